@@ -1,0 +1,1 @@
+"""Exact, proved closed-form responses of linear models with constant coefficients."""

@@ -1,0 +1,145 @@
+"""Exact real numbers of the form r_1 sqrt(d_1) + … + r_k sqrt(d_k), as models state them.
+
+The radicands d_i are squarefree positive integers (1 for the rational part) and the
+r_i are rational.  These numbers form a field: square roots of distinct squarefree
+integers are linearly independent over Q (A. S. Besicovitch, On the linear
+independence of fractional powers of integers, 1940), so equality is equality of terms.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from fractions import Fraction
+from math import gcd, isqrt
+
+__all__ = ["SurdSum", "square_part"]
+
+LARGEST_RADICAND = 10**18
+
+
+def square_part(n: int) -> tuple[int, int]:
+    """Return (r, d) with n = r^2 d and d squarefree, for n >= 1.
+
+    Trial division reaches the cube root; what is left then has at most two prime
+    factors, so it is a square, or squarefree.  Raises ValueError above `LARGEST_RADICAND`
+    unless n is a perfect square.
+    """
+    r = isqrt(n)
+    if r * r == n:
+        return r, 1
+    if n > LARGEST_RADICAND:
+        raise ValueError(f"square roots are taken of numbers up to {LARGEST_RADICAND:.0e}")
+    root, free, p = 1, 1, 2
+    while p * p * p <= n:
+        while n % (p * p) == 0:
+            n //= p * p
+            root *= p
+        if n % p == 0:
+            n //= p
+            free *= p
+        p += 1
+    r = isqrt(n)
+    return (root * r, free) if r * r == n else (root, free * n)
+
+
+@dataclass(frozen=True, slots=True)
+class SurdSum:
+    """A sum of rational multiples of square roots; `terms` maps radicand to coefficient.
+
+    `terms` is sorted by radicand and holds no zero coefficient; use `of` to build one.
+    """
+
+    terms: tuple[tuple[int, Fraction], ...]
+
+    @staticmethod
+    def of(terms: Mapping[int, Fraction]) -> SurdSum:
+        """Return the sum with these coefficients by squarefree radicand."""
+        return SurdSum(tuple(sorted((d, c) for d, c in terms.items() if c)))
+
+    @staticmethod
+    def rational(value: Fraction | int) -> SurdSum:
+        """Return a rational number as a surd sum."""
+        return SurdSum.of({1: Fraction(value)})
+
+    @property
+    def is_rational(self) -> bool:
+        """Whether no square root is left."""
+        return all(d == 1 for d, _ in self.terms)
+
+    @property
+    def is_zero(self) -> bool:
+        """Whether the number is zero, exactly."""
+        return not self.terms
+
+    def as_fraction(self) -> Fraction:
+        """Return the rational value.  Raises ValueError if there is a square root in it."""
+        if not self.is_rational:
+            raise ValueError(f"{self!r} is not rational")
+        return self.terms[0][1] if self.terms else Fraction(0)
+
+    def __neg__(self) -> SurdSum:
+        return SurdSum(tuple((d, -c) for d, c in self.terms))
+
+    def __add__(self, other: SurdSum) -> SurdSum:
+        total = dict(self.terms)
+        for d, c in other.terms:
+            total[d] = total.get(d, Fraction(0)) + c
+        return SurdSum.of(total)
+
+    def __sub__(self, other: SurdSum) -> SurdSum:
+        return self + (-other)
+
+    def __mul__(self, other: SurdSum) -> SurdSum:
+        total: dict[int, Fraction] = {}
+        for d, a in self.terms:
+            for e, b in other.terms:
+                g = gcd(d, e)
+                key = (d // g) * (e // g)
+                total[key] = total.get(key, Fraction(0)) + a * b * g
+        return SurdSum.of(total)
+
+    def inverse(self) -> SurdSum:
+        """Return 1/x by multiplying with conjugates.  Raises ZeroDivisionError at zero."""
+        if self.is_zero:
+            raise ZeroDivisionError("division by zero")
+        if self.is_rational:
+            return SurdSum.rational(1 / self.as_fraction())
+        prime = _smallest_prime(max(d for d, _ in self.terms))
+        conjugate = SurdSum(tuple((d, -c if d % prime == 0 else c) for d, c in self.terms))
+        return conjugate * (self * conjugate).inverse()
+
+    def __truediv__(self, other: SurdSum) -> SurdSum:
+        return self * other.inverse()
+
+    def power(self, exponent: int) -> SurdSum:
+        """Return x^exponent.  Raises ZeroDivisionError for a negative power of zero."""
+        base = self if exponent >= 0 else self.inverse()
+        result = SurdSum.rational(1)
+        for bit in bin(abs(exponent))[2:]:
+            result = result * result
+            if bit == "1":
+                result = result * base
+        return result
+
+    def sqrt(self) -> SurdSum:
+        """Return the square root of a rational number >= 0.
+
+        Raises ValueError for a negative number, or one that has a square root in it.
+        """
+        value = self.as_fraction()
+        if value < 0:
+            raise ValueError("the square root of a negative number is not real")
+        if value == 0:
+            return self
+        root, free = square_part(value.numerator * value.denominator)
+        return SurdSum.of({free: Fraction(root, value.denominator)})
+
+
+def _smallest_prime(n: int) -> int:
+    p = 2
+    while p * p <= n:
+        if n % p == 0:
+            return p
+        p += 1
+    return n

@@ -1,0 +1,122 @@
+"""The formula tree: what the reader makes of text and what the writers print.
+
+A formula is an immutable tree of the nodes below.  It says how something is
+*written*; two trees that differ may well be equal as mathematics.  Equality of
+values is decided in ``closedform.algebra``, never here.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+
+__all__ = [
+    "Call",
+    "Expression",
+    "Name",
+    "Negation",
+    "Number",
+    "Power",
+    "Product",
+    "Quotient",
+    "Sum",
+    "number",
+    "operations",
+]
+
+FUNCTIONS = ("exp", "sin", "cos", "sinh", "cosh", "sqrt")
+
+
+@dataclass(frozen=True, slots=True)
+class Number:
+    """A non-negative rational number; a sign is a `Negation` around it."""
+
+    value: Fraction
+
+
+@dataclass(frozen=True, slots=True)
+class Name:
+    """A named quantity in its ASCII spelling: a state, the time, a root (``omega_1``)."""
+
+    text: str
+
+
+@dataclass(frozen=True, slots=True)
+class Negation:
+    """The operand with the opposite sign."""
+
+    operand: Expression
+
+
+@dataclass(frozen=True, slots=True)
+class Sum:
+    """Two or more terms; a subtracted term is a `Negation`."""
+
+    terms: tuple[Expression, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Product:
+    """Two or more factors, in the order in which they are printed."""
+
+    factors: tuple[Expression, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Quotient:
+    """Numerator over denominator."""
+
+    numerator: Expression
+    denominator: Expression
+
+
+@dataclass(frozen=True, slots=True)
+class Power:
+    """Base to an exponent."""
+
+    base: Expression
+    exponent: Expression
+
+
+@dataclass(frozen=True, slots=True)
+class Call:
+    """One of `FUNCTIONS` applied to one argument."""
+
+    function: str
+    argument: Expression
+
+
+Expression = Number | Name | Negation | Sum | Product | Quotient | Power | Call
+
+
+def number(value: Fraction | int) -> Expression:
+    """Return the formula of a rational number, with its sign outside."""
+    value = Fraction(value)
+    return Negation(Number(-value)) if value < 0 else Number(value)
+
+
+def operations(expression: Expression) -> int:
+    """Count the operations a reader sees: + - * / ^, signs, and function calls.
+
+    A fraction p/q of two integers counts one division.  ``a - b`` counts one
+    subtraction (the sign of a later term is part of it); a leading sign counts one.
+    """
+    match expression:
+        case Number(value):
+            return int(value.denominator != 1)
+        case Name():
+            return 0
+        case Negation(operand):
+            return 1 + operations(operand)
+        case Sum(terms):
+            inside = sum(
+                operations(term.operand if isinstance(term, Negation) and i else term)
+                for i, term in enumerate(terms)
+            )
+            return inside + len(terms) - 1
+        case Product(factors):
+            return sum(map(operations, factors)) + len(factors) - 1
+        case Quotient(above, below) | Power(above, below):
+            return 1 + operations(above) + operations(below)
+        case Call(_, argument):
+            return 1 + operations(argument)
