@@ -1,0 +1,145 @@
+"""The base field K in which a model is solved: Q, or Q with square roots adjoined.
+
+Elements, polynomials and matrices over K are those of SymPy's polys layer (a `Domain`
+element, `DMP`, `DomainMatrix`), which computes with FLINT's types over Q.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+from functools import cached_property
+from itertools import combinations
+from math import prod
+from typing import Any
+
+from flint import arb, ctx, fmpq
+from sympy import Integer, sqrt
+from sympy.polys.densebasic import dup_strip
+from sympy.polys.domains import QQ
+from sympy.polys.matrices import DomainMatrix
+from sympy.polys.polyclasses import DMP
+
+from closedform.algebra.surds import SurdSum, square_part
+
+__all__ = ["BaseField", "FieldMatrix", "Polynomial", "Scalar", "base_field", "rational"]
+
+Scalar = Any
+"""An element of K."""
+Polynomial = Any
+"""A polynomial in one variable over K (SymPy's DMP)."""
+FieldMatrix = Any
+"""A dense matrix over K (SymPy's DomainMatrix)."""
+
+
+@dataclass(frozen=True)
+class BaseField:
+    """Q(sqrt(d_1), …, sqrt(d_k)) for independent squarefree `radicands` (none: Q itself)."""
+
+    radicands: tuple[int, ...] = ()
+
+    @cached_property
+    def domain(self) -> Any:
+        """The SymPy domain whose elements are the scalars of this field."""
+        if not self.radicands:
+            return QQ
+        return QQ.algebraic_field(*(sqrt(Integer(d)) for d in self.radicands))
+
+    @cached_property
+    def _basis(self) -> dict[int, Scalar]:
+        """Each squarefree product of the radicands, and its square root in the domain."""
+        roots: dict[int, Scalar] = {}
+        for size in range(len(self.radicands) + 1):
+            for chosen in combinations(self.radicands, size):
+                _, free = square_part(prod(chosen))
+                roots[free] = self.domain.from_sympy(sqrt(Integer(free)))
+        return roots
+
+    @cached_property
+    def _powers(self) -> tuple[SurdSum, ...]:
+        """The powers of the primitive element, lowest first, as surd sums.
+
+        SymPy's primitive element is a sum of integer multiples of the adjoined roots.
+        """
+        parts = self.domain.ext.as_expr().as_coefficients_dict().items()
+        theta = SurdSum.of({int(root**2): Fraction(int(c)) for root, c in parts})
+        return tuple(theta.power(k) for k in range(2 ** len(self.radicands)))
+
+    def scalar(self, value: SurdSum | Fraction | int) -> Scalar:
+        """Return a number as an element of the field.  Raises KeyError if it is not in it."""
+        if not isinstance(value, SurdSum):
+            return self.domain.convert(QQ(Fraction(value).numerator, Fraction(value).denominator))
+        total = self.domain.zero
+        for radicand, coefficient in value.terms:
+            total += self._basis[radicand] * self.scalar(coefficient)
+        return total
+
+    def surds(self, element: Scalar) -> SurdSum:
+        """Return an element as a sum of rational multiples of square roots."""
+        if not self.radicands:
+            return SurdSum.rational(rational(element))
+        total = SurdSum(())
+        for power, coefficient in zip(self._powers, reversed(element.to_list()), strict=False):
+            total += power * SurdSum.rational(rational(coefficient))
+        return total
+
+    def enclose(self, element: Scalar) -> arb:
+        """Return a ball that holds the element, at FLINT's current precision."""
+        terms = self.surds(element).terms
+        return sum((arb(_fmpq(c)) * arb(d).sqrt() for d, c in terms), arb(0))
+
+    def sign(self, element: Scalar) -> int:
+        """Return -1, 0 or 1: zero is decided in the field, the sign by refined enclosures."""
+        if not element:
+            return 0
+        bits = 64
+        while True:
+            with ctx.workprec(bits):
+                ball = self.enclose(element)
+            if not ball.contains(0):
+                return 1 if ball > 0 else -1
+            bits *= 2
+
+    def polynomial(self, coefficients: Iterable[Scalar]) -> Polynomial:
+        """Return the polynomial with these coefficients, highest first."""
+        return DMP(dup_strip(list(coefficients)), self.domain, 0)
+
+    def matrix(self, rows: Sequence[Sequence[Scalar]]) -> FieldMatrix:
+        """Return the dense matrix with these rows (at least one row and column)."""
+        return DomainMatrix(
+            [list(row) for row in rows], (len(rows), len(rows[0])), self.domain
+        ).to_dense()
+
+    def identity(self, n: int) -> FieldMatrix:
+        """Return the n x n unit matrix."""
+        return DomainMatrix.eye(n, self.domain).to_dense()
+
+    def zeros(self, rows: int, columns: int) -> FieldMatrix:
+        """Return the zero matrix of this shape."""
+        return DomainMatrix.zeros((rows, columns), self.domain).to_dense()
+
+
+def base_field(numbers: Iterable[SurdSum]) -> BaseField:
+    """Return the smallest of these fields that holds all the numbers.
+
+    A radicand is adjoined only when its class modulo squares is not a product of
+    classes already there.
+    """
+    radicands = sorted({d for number in numbers for d, _ in number.terms} - {1})
+    chosen: list[int] = []
+    spanned = {1}
+    for d in radicands:
+        if d not in spanned:
+            chosen.append(d)
+            spanned |= {square_part(s * d)[1] for s in spanned}
+    return BaseField(tuple(chosen))
+
+
+def rational(element: Scalar) -> Fraction:
+    """Return a rational scalar, of whichever number type SymPy was set up with."""
+    return Fraction(int(element.numerator), int(element.denominator))
+
+
+def _fmpq(value: Fraction) -> fmpq:
+    return fmpq(value.numerator, value.denominator)
