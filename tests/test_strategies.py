@@ -9,18 +9,20 @@ import pytest
 from flint import arb_mat, ctx, fmpq_mat, fmpq_poly
 from hypothesis import given
 
+from tests.known_systems import (
+    Coefficients,
+    KnownSystem,
+    fmpq_matrix,
+    highest_first,
+    polynomial,
+    polynomial_at,
+)
 from tests.strategies import (
     IRREDUCIBLE,
     KINDS,
-    Coefficients,
-    KnownSystem,
     every_system,
-    fmpq_matrix,
-    highest_first,
     irreducibles,
     known_systems,
-    polynomial,
-    polynomial_at,
     structures,
 )
 
