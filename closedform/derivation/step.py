@@ -8,22 +8,30 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
-from closedform.notation.expression import Expression
+from closedform.notation.expression import Expression, Name
 
-__all__ = ["Derivation", "Matrix", "Side", "Statement", "Step", "Symbol"]
+__all__ = ["IMAGINARY_UNIT", "Derivation", "Matrix", "Side", "Statement", "Step", "Symbol"]
+
+IMAGINARY_UNIT = Name("@i")
+"""The upright i.  No model can name a quantity so; a state ``i`` stays an italic letter."""
 
 
 @dataclass(frozen=True, slots=True)
 class Symbol:
     """A mathematical label that is no formula of its own: A, P, J, v_1, e^(At), x(t), p(lambda).
 
-    `kind` selects how it is set (document/latex knows the kinds); `indices` are printed
-    as subscripts; `argument` follows in brackets when given.
+    `kind` selects how it is set (document/symbols.py has the table of kinds); `indices`
+    are printed as subscripts; `argument` follows in brackets when given.  `letter` is the
+    ASCII spelling of the letter where the kind has none of its own, `order` the number
+    of derivatives, and `parts` are what a compound kind is made of (a and b of a +- ib).
     """
 
     kind: str
     indices: tuple[str, ...] = ()
     argument: Expression | None = None
+    letter: str = ""
+    order: int = 0
+    parts: tuple[Side, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -1,0 +1,198 @@
+"""Statements as displayed equations that stay inside the margins.
+
+A chain that fits stands on one line.  A longer one is aligned at its relation signs, its
+long sides broken at plus and minus.  A matrix wider than the line is set with its
+columns nearer together, else column by column, else entry by entry: equal entries in one
+line, zero entries left out (`Display.zeros` says so, and the template words it).
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from closedform.derivation.step import Matrix, Side, Statement, Symbol
+from closedform.document.box import EM_PER_LINE, RELATION, Box
+from closedform.document.breaking import filled, pieces
+from closedform.document.matrices import ZERO, matrix_box, matrix_height, with_front
+from closedform.document.symbols import side_box
+from closedform.notation.expression import Expression, Product
+
+__all__ = ["Display", "displayed", "fits"]
+
+WIDEST_LEFT_SIDE = 12.0
+"""A left side up to this width, in em, keeps the lines below it indented past it."""
+
+TALLEST_COLUMN = 40.0
+AS_GIVEN = frozenset({"matrix", "initial"})
+"""Statements of what the user gave: their matrices keep their entries as they are."""
+
+RELATIONS = {"=": "=", "~": r"\sim", "!=": r"\neq", "<": "<", ">": ">", "in": r"\in"}
+
+
+@dataclass(frozen=True, slots=True)
+class Display:
+    """A displayed equation.  `form` is whole, columns or entries; `zeros` says whether
+    zero entries were left out."""
+
+    latex: str
+    form: str = "whole"
+    zeros: bool = False
+
+    def __str__(self) -> str:
+        return self.latex
+
+
+def displayed(statement: Statement, *, label: str = "", by: str = "auto") -> Display:
+    """Return the statement as a display, numbered if it has a label.
+
+    `by` is auto, or entries to have a matrix set entry by entry though it would fit.
+    Raises ValueError for a relation that is not in `RELATIONS`.
+    """
+    relation = RELATIONS.get(statement.relation)
+    if relation is None:
+        raise ValueError(f"no relation is written {statement.relation!r}")
+    sides = statement.sides
+    if statement.says not in AS_GIVEN:
+        sides = tuple(with_front(s) if isinstance(s, Matrix) else s for s in sides)
+    boxes = [side_box(side) for side in sides]
+    left = boxes[0].width if boxes[0].width <= WIDEST_LEFT_SIDE else 1.0
+    room = EM_PER_LINE - left - RELATION
+    wide = next(
+        (
+            i
+            for i, side in enumerate(sides)
+            if isinstance(side, Matrix)
+            and (by == "entries" or matrix_box(side, tight=True).width > room)
+        ),
+        None,
+    )
+    if wide is None:
+        rows = _chain(sides, relation, room)
+        return Display(_environment(rows, label))
+    matrix, others = sides[wide], sides[:wide] + sides[wide + 1 :]
+    if not isinstance(matrix, Matrix) or not others:
+        raise ValueError("a matrix too wide for the line needs a name on its left")
+    rows = _chain(others, relation, room) if len(others) > 1 else []
+    name = others[0]
+    if by == "auto" and _stands_by_columns(matrix):
+        rows += _columns(name, matrix, relation)
+        return Display(_environment(rows, label), "columns")
+    more, zeros = _entries(name, matrix, relation)
+    return Display(_environment(rows + more, label), "entries", zeros)
+
+
+def fits(statement: Statement) -> bool:
+    """Say whether the statement can stand whole, no matrix of it taken apart."""
+    return displayed(statement).form == "whole"
+
+
+def _environment(rows: list[str], label: str) -> str:
+    tag = rf"\label{{{label}}}" if label else ""
+    star = "" if label else "*"
+    if len(rows) == 1:
+        body = rows[0].replace("&", "", 1) if rows[0].startswith("&") else rows[0]
+        return f"\\begin{{equation{star}}}{tag}\n  {body}\n\\end{{equation{star}}}"
+    rest = r" \notag" if label else ""
+    lines = [f"  {rows[0]}{tag}", *(f"  {row}{rest}" for row in rows[1:])]
+    return f"\\begin{{align{star}}}\n" + " \\\\\n".join(lines) + f"\n\\end{{align{star}}}"
+
+
+def _matrix_aware(side: Side, room: float) -> list[Box]:
+    if isinstance(side, Matrix):
+        box = matrix_box(side)
+        return [box if box.width <= room else matrix_box(side, tight=True)]
+    return pieces(side, room)
+
+
+def _chain(sides: tuple[Side, ...], relation: str, room: float) -> list[str]:
+    """Return the rows of a chain, each with an alignment mark if there are several."""
+    boxes = [side_box(side) for side in sides]
+    if sum(box.width for box in boxes) + RELATION * (len(boxes) - 1) <= EM_PER_LINE:
+        return [f" {relation} ".join(box.latex for box in boxes)]
+    if boxes[0].width <= WIDEST_LEFT_SIDE:
+        rows = [boxes[0].latex + " "]
+        begin, indent = f"&{relation} ", r"&\qquad "
+        used, beyond = 0.0, boxes[0].width + 2.0
+        opening = True
+    else:
+        lines = filled(pieces(sides[0], EM_PER_LINE), EM_PER_LINE, EM_PER_LINE - 2)
+        rows = [f"& {lines[0]}", *(rf"&\qquad {line}" for line in lines[1:])]
+        begin, indent = rf"&\quad {relation} ", r"&\qquad\quad "
+        used, beyond = room, 3.0
+        opening = False
+    for side in sides[1:]:
+        parts = _matrix_aware(side, room)
+        wide = sum(part.width for part in parts)
+        if not opening and used + RELATION + wide <= room:
+            rows[-1] += f" {relation} " + "".join(part.latex for part in parts)
+            used += RELATION + wide
+            continue
+        lines = filled(parts, room, EM_PER_LINE - beyond)
+        if opening:
+            rows[-1] += begin + lines[0]
+        else:
+            rows.append(begin + lines[0])
+        rows += [indent + line for line in lines[1:]]
+        used = wide if len(lines) == 1 else room
+        opening = False
+    return rows
+
+
+def _entry(name: Side, *indices: str) -> Symbol:
+    return Symbol("entry", indices, parts=(name,))
+
+
+def _stands_by_columns(matrix: Matrix) -> bool:
+    if len(matrix.rows[0]) == 1 or matrix_height(matrix) > TALLEST_COLUMN:
+        return False
+    entries = [entry for row in matrix.rows for entry in row]
+    if 2 * entries.count(ZERO) > len(entries):
+        return False
+    return all(box.width <= EM_PER_LINE for _, box in _column_boxes(_entry(ZERO), matrix))
+
+
+def _column_boxes(name: Symbol, matrix: Matrix) -> list[tuple[str, Box]]:
+    found = []
+    head = side_box(name).width + RELATION + 1.5
+    for j, column in enumerate(zip(*matrix.rows, strict=True), start=1):
+        box = matrix_box(with_front(Matrix(tuple((entry,) for entry in column), matrix.front)))
+        found.append((str(j), Box(box.latex, box.width + head)))
+    return found
+
+
+def _columns(name: Side, matrix: Matrix, relation: str) -> list[str]:
+    """Return rows with as many columns in each as fit, each column with its name."""
+    rows: list[str] = []
+    used = EM_PER_LINE
+    for index, box in _column_boxes(_entry(name), matrix):
+        column = side_box(_entry(name, r"\cdot", index))
+        text = f"{column.latex} {relation} {box.latex}"
+        if used + 3.0 + box.width > EM_PER_LINE:
+            rows.append(f"& {text}")
+            used = box.width
+        else:
+            rows[-1] += rf",\qquad {text}"
+            used += 3.0 + box.width
+    return rows
+
+
+def _entries(name: Side, matrix: Matrix, relation: str) -> tuple[list[str], bool]:
+    """Return the rows of an entry-by-entry list, and whether zeros are missing in it."""
+    places: dict[Expression, list[Side]] = {}
+    single = len(matrix.rows[0]) == 1
+    for i, row in enumerate(matrix.rows, start=1):
+        for j, entry in enumerate(row, start=1):
+            indices = (str(i),) if single else (str(i), str(j))
+            places.setdefault(entry, []).append(_entry(name, *indices))
+    zeros = places.pop(ZERO, None) is not None
+    rows: list[str] = []
+    for entry, names in places.items():
+        value = entry if matrix.front is None else Product((matrix.front, entry))
+        room = EM_PER_LINE - side_box(names[0]).width - RELATION
+        chain = _chain((*names, value), relation, room)
+        rows += (
+            [chain[0].replace(f" {relation} ", f" &{relation} ", 1), *chain[1:]]
+            if (len(chain) == 1)
+            else chain
+        )
+    return rows, zeros

@@ -1,0 +1,89 @@
+"""Mathematics as LaTeX: the one place from which templates get it."""
+
+from __future__ import annotations
+
+import re
+
+from closedform.derivation.step import Matrix, Side, Statement
+from closedform.document.display import Display, displayed, fits
+from closedform.document.escape import escaped
+from closedform.document.names import name_box
+from closedform.document.symbols import side_box
+from closedform.notation.expression import Expression
+
+__all__ = [
+    "Display",
+    "cell",
+    "decimal",
+    "displayed",
+    "expression_latex",
+    "fits",
+    "inline",
+    "name_latex",
+    "side_latex",
+]
+
+DECIMAL = re.compile(
+    r"(?P<sign>[-+\u2212]?)(?P<whole>[0-9]+)(?P<part>(\.[0-9]+)?)([eE](?P<power>[-+]?[0-9]+))?"
+)
+
+
+def expression_latex(expression: Expression) -> str:
+    """Return a formula as LaTeX for a display, without the dollar signs."""
+    return side_box(expression).latex
+
+
+def side_latex(side: Side) -> str:
+    """Return a formula, symbol, matrix or product of such as LaTeX."""
+    return side_box(side).latex
+
+
+def name_latex(text: str) -> str:
+    r"""Return a name in ASCII spelling as a symbol.
+
+    >>> name_latex("omega_d"), name_latex("k12")
+    ('\\omega_{\\mathrm{d}}', 'k_{12}')
+    """
+    return name_box(text).latex
+
+
+def inline(item: Side | Statement | str) -> str:
+    """Return mathematics within a line of text; a plain string is a name."""
+    if isinstance(item, str):
+        return f"${name_latex(item)}$"
+    if isinstance(item, Statement):
+        return "$" + f" {item.relation} ".join(map(side_latex, item.sides)) + "$"
+    return f"${side_latex(item)}$"
+
+
+def cell(item: Side | Statement | str) -> str:
+    """Return what stands in a cell of a table: text is escaped, the rest is mathematics."""
+    return escaped(item) if isinstance(item, str) else inline(item)
+
+
+def decimal(text: str) -> str:
+    r"""Return a decimal as mathematics; a text that is none is escaped.
+
+    >>> decimal("-1.25e-7")
+    '$-1.25 \\times 10^{-7}$'
+    """
+    sign, whole, part = split_decimal(text)
+    return escaped(text) if not whole else f"${sign}{whole}{part}$"
+
+
+def split_decimal(text: str) -> tuple[str, str, str]:
+    """Return a decimal's sign, its digits before the point, and the rest as LaTeX.
+
+    All three are empty if the text is no decimal.
+    """
+    match = DECIMAL.fullmatch(text.strip())
+    if match is None:
+        return "", "", ""
+    power = rf" \times 10^{{{int(match['power'])}}}" if match["power"] else ""
+    sign = "-" if match["sign"] in {"-", "\u2212"} else ""
+    return sign, match["whole"], match["part"] + power
+
+
+def is_matrix(side: Side) -> bool:
+    """Say whether a side is a matrix of formulas."""
+    return isinstance(side, Matrix)

@@ -1,0 +1,90 @@
+r"""Names in their ASCII spelling as mathematical symbols: ``omega_d`` is \omega_{\mathrm{d}}.
+
+A name is a base and indices.  Indices follow underscores, and digits at the end of the
+base are one too: ``k12`` is k with the index 12.  Single letters and Greek letters are
+italic, longer names and letters in indices upright (ISO 80000-2: an index that is not
+itself a quantity is upright).
+"""
+
+from __future__ import annotations
+
+import re
+
+from closedform.document.box import Box, Style, plain
+from closedform.document.escape import escaped
+
+__all__ = ["GREEK", "IMAGINARY", "is_long", "letter_box", "name_box", "subscripted"]
+
+GREEK_NAMES = (
+    "alpha beta gamma delta epsilon varepsilon zeta eta theta vartheta iota kappa "
+    "lambda mu nu xi pi varpi rho varrho sigma varsigma tau upsilon phi varphi chi "
+    "psi omega Gamma Delta Theta Lambda Xi Pi Sigma Upsilon Phi Psi Omega"
+)
+GREEK = {name: f"\\{name}" for name in GREEK_NAMES.split()}
+GREEK |= {"lamda": r"\lambda", "omicron": "o"}
+"""Greek letters by name; `lamda` is the spelling Python users need for `lambda`."""
+
+IMAGINARY = "@i"
+WIDE = frozenset("mwMWABCDEFGHKNOQRTUVXYZ")
+NAME = re.compile(
+    r"(?P<base>[A-Za-z]+)(?P<digits>([0-9][A-Za-z0-9]*)?)(?P<rest>(_[A-Za-z0-9]+)*)(?P<primes>'*)"
+)
+
+
+def _letter_width(letter: str) -> float:
+    return 1.0 if letter in "mMW" else 0.86 if letter in WIDE else 0.62
+
+
+def _width(word: str) -> float:
+    """Return the width of a word at text size."""
+    return 0.75 if word in GREEK else sum(map(_letter_width, word))
+
+
+def _index(word: str) -> str:
+    if word.isdigit():
+        return word
+    return GREEK.get(word) or rf"\mathrm{{{word}}}"
+
+
+def subscripted(base: Box, indices: tuple[str, ...], style: Style) -> Box:
+    """Return the piece with indices set below it, separated by commas."""
+    if not indices:
+        return base
+    words = [word for index in indices for word in index.split("_") if word]
+    width = sum(0.55 * len(w) if w.isdigit() else _width(w) for w in words) + 0.3 * (len(words) - 1)
+    latex = f"{base.latex}_{{{','.join(map(_index, words))}}}"
+    return Box(latex, base.width + (width + 0.08) * style.script.scale, base.height)
+
+
+def letter_box(text: str, style: Style = Style.DISPLAY, *, bold: bool = False) -> Box:
+    """Return one letter or word without indices, bold italic for matrices and vectors."""
+    word = text.isascii() and text.isalpha()
+    inner = GREEK.get(text) or (text if word and len(text) == 1 else "")
+    if not inner:
+        inner = rf"\mathrm{{{text}}}" if word else rf"\text{{{escaped(text)}}}"
+    width = _width(text) + (0.1 if bold else 0.0)
+    return plain(rf"\boldsymbol{{{inner}}}" if bold else inner, width, style)
+
+
+def is_long(text: str) -> bool:
+    """Say whether the name's base is set upright as a word, so that it needs space around."""
+    match = NAME.fullmatch(text)
+    base = match["base"] if match else text
+    return len(base) > 1 and base not in GREEK and base != IMAGINARY
+
+
+def name_box(text: str, style: Style = Style.DISPLAY, extra: tuple[str, ...] = ()) -> Box:
+    """Return a name as a symbol, with `extra` indices after its own.
+
+    A text that is no name (it cannot come from the reader) is set upright as it stands.
+    """
+    if text == IMAGINARY:
+        return plain(r"\mathrm{i}", 0.3, style)
+    match = NAME.fullmatch(text)
+    if match is None:
+        return subscripted(letter_box(text, style), extra, style)
+    indices = [match["digits"], *match["rest"].split("_"), *extra]
+    base = letter_box(match["base"], style)
+    box = subscripted(base, tuple(index for index in indices if index), style)
+    primes = match["primes"]
+    return Box(box.latex + primes, box.width + 0.3 * len(primes) * style.scale, box.height)

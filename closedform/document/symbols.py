@@ -1,0 +1,246 @@
+r"""Labels that are no formulas, and sides of relations, as LaTeX.
+
+The kinds of `Symbol`.  `letter`, `indices`, `argument`, `order` and `parts` are the
+fields each one uses; a default letter stands in brackets.  Matrices and vectors are bold
+italic.  In kinds with an argument and a default of t, leave `argument` out for t.
+
+    kind                       fields                              example
+    -------------------------  ----------------------------------  --------------------------
+    matrix                     letter [A] indices argument         A,  P,  R_0
+    vector                     letter [x] indices argument         x,  x_0,  v_1,  x(t)
+    scalar                     letter indices argument order       lambda_1,2   x_1(t)   g''(t)
+                               (letter: a name, v_left is one)
+    identity                   letter [I]                          I
+    zero                       -                                   0 (bold)
+    inverse                    letter [P] indices                  P^(-1)
+    transpose                  letter [A] indices                  A^T
+    derivative                 letter [x] indices argument order   x',  x'(t)
+    transition                 letter [A] argument [t]             e^(At)
+    exponential                letter [J] argument [t]             e^(Jt)
+    characteristic polynomial  letter [p] argument [lambda]        p(lambda)
+    determinant                letter [A] argument [lambda]        det(lambda I - A)
+    resolvent                  letter [A] argument [s]             (s I - A)^(-1)
+    shifted                    letter [A] argument, order (power)  A - lambda_1 I,  (A + 2I)^2
+    entry                      parts: one side; indices            (e^(At))_12
+    pair                       parts: real part a, frequency w     a +- i w
+    real pair                  parts: mean a, half distance b      a +- b
+    sum                        parts: sides                        R_0 g + R_1 g'
+    dots                       -                                   ...
+
+`IMAGINARY_UNIT` of closedform.derivation.step is the upright i inside formulas.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
+from closedform.document.box import BINARY, Box, Style, bracketed, joined, plain
+from closedform.document.formula import formula, signed
+from closedform.document.matrices import ZERO, matrix_box
+from closedform.document.names import letter_box, name_box, subscripted
+from closedform.notation.expression import Expression, Name, Negation, Number, Product, Sum
+
+__all__ = ["KINDS", "side_box", "symbol_box"]
+
+COMPOUND = frozenset({"pair", "real pair", "sum", "shifted"})
+LETTERS = frozenset({"matrix", "vector", "inverse", "transpose", "identity", "zero", "derivative"})
+
+
+def side_box(side: Side) -> Box:
+    """Return one side of a relation; the members of a tuple stand side by side."""
+    if isinstance(side, Symbol):
+        return symbol_box(side)
+    if isinstance(side, Matrix):
+        return matrix_box(side)
+    if isinstance(side, tuple):
+        return joined(*_product_boxes(side))
+    return formula(side)
+
+
+def _product_boxes(members: tuple[Side, ...]) -> list[Box]:
+    boxes: list[Box] = []
+    for i, member in enumerate(members):
+        box = side_box(member)
+        if _binds_loosely(member):
+            box = bracketed(box)
+        if i and not (_is_letter(members[i - 1]) and _is_letter(member)):
+            boxes.append(Box(r"\,", 0.2))
+        boxes.append(box)
+    return boxes
+
+
+def _binds_loosely(side: Side) -> bool:
+    if isinstance(side, Symbol):
+        return side.kind in COMPOUND and not (side.kind == "shifted" and side.order > 1)
+    return isinstance(side, Sum | Negation)
+
+
+def _is_letter(side: Side) -> bool:
+    return isinstance(side, Symbol) and side.kind in LETTERS and side.argument is None
+
+
+def symbol_box(symbol: Symbol) -> Box:
+    """Return a symbol set as its kind demands.  Raises ValueError for an unknown kind."""
+    setter = KINDS.get(symbol.kind)
+    if setter is None:
+        raise ValueError(f"no kind of symbol is called {symbol.kind!r}")
+    return setter(symbol)
+
+
+def _bold(symbol: Symbol, letter: str, style: Style = Style.DISPLAY) -> Box:
+    return subscripted(letter_box(symbol.letter or letter, style, bold=True), symbol.indices, style)
+
+
+def _raised(box: Box, exponent: str, width: float) -> Box:
+    return Box(f"{box.latex}^{{{exponent}}}", box.width + width, box.height)
+
+
+def _primed(box: Box, order: int) -> Box:
+    if order > 3:
+        return _raised(box, f"({order})", 1.2)
+    return Box(box.latex + "'" * order, box.width + 0.3 * order, box.height)
+
+
+def _applied(box: Box, argument: Expression | None) -> Box:
+    return box if argument is None else joined(box, bracketed(formula(argument)))
+
+
+def _lettered(letter: str) -> Callable[[Symbol], Box]:
+    def setter(symbol: Symbol) -> Box:
+        return _applied(_bold(symbol, letter), symbol.argument)
+
+    return setter
+
+
+def _scalar(symbol: Symbol) -> Box:
+    box = name_box(symbol.letter, extra=symbol.indices)
+    return _applied(_primed(box, symbol.order), symbol.argument)
+
+
+def _derivative(symbol: Symbol) -> Box:
+    return _applied(_primed(_bold(symbol, "x"), max(symbol.order, 1)), symbol.argument)
+
+
+def _inverse(symbol: Symbol) -> Box:
+    return _raised(_bold(symbol, "P"), "-1", 1.1)
+
+
+def _transpose(symbol: Symbol) -> Box:
+    return _raised(_bold(symbol, "A"), r"\mathsf{T}", 0.6)
+
+
+def _exponential(letter: str) -> Callable[[Symbol], Box]:
+    def setter(symbol: Symbol) -> Box:
+        argument = symbol.argument or Name("t")
+        raised = formula(argument, Style.SCRIPT)
+        if isinstance(argument, Sum | Negation | Number):
+            raised = bracketed(raised, Style.SCRIPT)
+        base = _bold(symbol, letter, Style.SCRIPT)
+        return Box(rf"\mathrm{{e}}^{{{base.latex}{raised.latex}}}", 0.6 + base.width + raised.width)
+
+    return setter
+
+
+def _polynomial(symbol: Symbol) -> Box:
+    box = name_box(symbol.letter or "p", extra=symbol.indices)
+    return _applied(box, symbol.argument or Name("lambda"))
+
+
+def _difference(symbol: Symbol, variable: str) -> Box:
+    """Return lambda I - A in brackets."""
+    argument = formula(symbol.argument or Name(variable))
+    head = Box(rf"{argument.latex}\boldsymbol{{I}} - ", argument.width + 0.6 + BINARY)
+    return bracketed(joined(head, _bold(symbol, "A")))
+
+
+def _determinant(symbol: Symbol) -> Box:
+    return joined(plain(r"\det", 1.5), _difference(symbol, "lambda"))
+
+
+def _resolvent(symbol: Symbol) -> Box:
+    return _raised(_difference(symbol, "s"), "-1", 1.1)
+
+
+def _shifted(symbol: Symbol) -> Box:
+    box = _bold(symbol, "A")
+    if symbol.argument is None:
+        raise ValueError("a shifted matrix needs the eigenvalue as its argument")
+    if symbol.argument != ZERO:
+        negative, size = signed(symbol.argument)
+        amount = formula(size)
+        if isinstance(size, Sum):
+            amount = bracketed(amount)
+        if size == Number(ZERO.value + 1):
+            amount = Box("", 0.0)
+        gap = Box(r"\," if amount.height else "", 0.2)
+        sign = Box(" + " if negative else " - ", BINARY)
+        box = joined(box, sign, amount, gap, Box(r"\boldsymbol{I}", 0.6))
+    if symbol.order > 1:
+        box = box if symbol.argument == ZERO else bracketed(box)
+        box = _raised(box, str(symbol.order), 0.5)
+    return box
+
+
+def _entry(symbol: Symbol) -> Box:
+    body = side_box(symbol.parts[0])
+    comma = "," if any(len(index) > 1 for index in symbol.indices) else ""
+    index = comma.join(symbol.indices)
+    return Box(rf"\bigl({body.latex}\bigr)_{{{index}}}", body.width + 1.0 + 0.42 * len(index))
+
+
+def _pair(symbol: Symbol) -> Box:
+    real, frequency = symbol.parts
+    if not isinstance(frequency, Matrix | Symbol | tuple):
+        if frequency == Number(ZERO.value + 1):
+            frequency = IMAGINARY_UNIT
+        elif isinstance(frequency, Number):
+            frequency = Product((frequency, IMAGINARY_UNIT))
+        else:
+            frequency = Product((IMAGINARY_UNIT, frequency))
+    return _plus_minus(real, frequency)
+
+
+def _real_pair(symbol: Symbol) -> Box:
+    return _plus_minus(*symbol.parts)
+
+
+def _plus_minus(middle: Side, distance: Side) -> Box:
+    half = side_box(distance)
+    if _binds_loosely(distance):
+        half = bracketed(half)
+    if middle == ZERO:
+        return joined(plain(r"\pm ", 0.8), half)
+    return joined(side_box(middle), plain(r" \pm ", BINARY), half)
+
+
+def _sum(symbol: Symbol) -> Box:
+    boxes: list[Box] = []
+    for i, part in enumerate(symbol.parts):
+        if i:
+            boxes.append(plain(" + ", BINARY))
+        boxes.append(side_box(part))
+    return joined(*boxes)
+
+
+KINDS: dict[str, Callable[[Symbol], Box]] = {
+    "matrix": _lettered("A"),
+    "vector": _lettered("x"),
+    "scalar": _scalar,
+    "identity": _lettered("I"),
+    "zero": lambda _: plain(r"\boldsymbol{0}", 0.6),
+    "inverse": _inverse,
+    "transpose": _transpose,
+    "derivative": _derivative,
+    "transition": _exponential("A"),
+    "exponential": _exponential("J"),
+    "characteristic polynomial": _polynomial,
+    "determinant": _determinant,
+    "resolvent": _resolvent,
+    "shifted": _shifted,
+    "entry": _entry,
+    "pair": _pair,
+    "real pair": _real_pair,
+    "sum": _sum,
+    "dots": lambda _: plain(r"\cdots", 1.2),
+}
