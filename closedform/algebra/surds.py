@@ -13,6 +13,8 @@ from dataclasses import dataclass
 from fractions import Fraction
 from math import gcd, isqrt
 
+from flint import fmpz
+
 __all__ = ["SurdSum", "square_part"]
 
 LARGEST_RADICAND = 10**18
@@ -21,26 +23,19 @@ LARGEST_RADICAND = 10**18
 def square_part(n: int) -> tuple[int, int]:
     """Return (r, d) with n = r^2 d and d squarefree, for n >= 1.
 
-    Trial division reaches the cube root; what is left then has at most two prime
-    factors, so it is a square, or squarefree.  Raises ValueError above `LARGEST_RADICAND`
-    unless n is a perfect square.
+    Raises ValueError above `LARGEST_RADICAND` unless n is a perfect square: the factors
+    of n are needed.
     """
     r = isqrt(n)
     if r * r == n:
         return r, 1
     if n > LARGEST_RADICAND:
         raise ValueError(f"square roots are taken of numbers up to {LARGEST_RADICAND:.0e}")
-    root, free, p = 1, 1, 2
-    while p * p * p <= n:
-        while n % (p * p) == 0:
-            n //= p * p
-            root *= p
-        if n % p == 0:
-            n //= p
-            free *= p
-        p += 1
-    r = isqrt(n)
-    return (root * r, free) if r * r == n else (root, free * n)
+    root, free = 1, 1
+    for p, exponent in fmpz(n).factor():
+        root *= int(p) ** (exponent // 2)
+        free *= int(p) ** (exponent % 2)
+    return root, free
 
 
 @dataclass(frozen=True, slots=True)
@@ -100,13 +95,20 @@ class SurdSum:
         return SurdSum.of(total)
 
     def inverse(self) -> SurdSum:
-        """Return 1/x by multiplying with conjugates.  Raises ZeroDivisionError at zero."""
+        """Return 1/x by multiplying with conjugates.  Raises ZeroDivisionError at zero.
+
+        The conjugate changes the sign of every square root whose radicand a divisor b of
+        one of them divides.  That is an automorphism of the field if b divides or is prime
+        to each radicand, so no radicand need be factored.
+        """
         if self.is_zero:
             raise ZeroDivisionError("division by zero")
         if self.is_rational:
             return SurdSum.rational(1 / self.as_fraction())
-        prime = _smallest_prime(max(d for d, _ in self.terms))
-        conjugate = SurdSum(tuple((d, -c if d % prime == 0 else c) for d, c in self.terms))
+        b = max(d for d, _ in self.terms)
+        for d, _ in self.terms:
+            b = gcd(b, d) if gcd(b, d) > 1 else b
+        conjugate = SurdSum(tuple((d, -c if d % b == 0 else c) for d, c in self.terms))
         return conjugate * (self * conjugate).inverse()
 
     def __truediv__(self, other: SurdSum) -> SurdSum:
@@ -125,21 +127,14 @@ class SurdSum:
     def sqrt(self) -> SurdSum:
         """Return the square root of a rational number >= 0.
 
-        Raises ValueError for a negative number, or one that has a square root in it.
+        Raises ValueError for a negative number, for one that has a square root in it, and
+        where `square_part` does for the numerator or the denominator.
         """
         value = self.as_fraction()
         if value < 0:
             raise ValueError("the square root of a negative number is not real")
         if value == 0:
             return self
-        root, free = square_part(value.numerator * value.denominator)
-        return SurdSum.of({free: Fraction(root, value.denominator)})
-
-
-def _smallest_prime(n: int) -> int:
-    p = 2
-    while p * p <= n:
-        if n % p == 0:
-            return p
-        p += 1
-    return n
+        root, free = square_part(value.numerator)
+        root_below, free_below = square_part(value.denominator)
+        return SurdSum.of({free * free_below: Fraction(root, root_below * free_below)})
