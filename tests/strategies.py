@@ -97,7 +97,7 @@ def every_system(order: int) -> Iterator[tuple[str, KnownSystem]]:
 
 def mixing(order: int) -> list[tuple[int, int, int]]:
     """Return row operations that fill a matrix of this order, the same ones every time."""
-    source = random.Random(order)  # noqa: S311 - a seeded choice of test data, no secret
+    source = random.Random(order)
     return [
         (i, j, source.choice((-1, 1)))
         for i in range(order)
