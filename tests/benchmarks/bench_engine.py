@@ -1,0 +1,270 @@
+"""Time the exact engine, its proof included, beside SymPy's own matrix exponential.
+
+    python tests/benchmarks/bench_engine.py [--smoke] [--cutoff 60] [--json FILE] [NAME ...]
+
+Every timing is taken in a process of its own after a first small call, so neither side
+pays for its imports, a hanging call is ended at the cut-off, and peak memory is that of
+one side.  The exit status is 1 if an answer of ours is refuted or not given because of an
+error; no time decides it.
+"""
+
+from __future__ import annotations
+
+import argparse
+import json
+import os
+import platform
+import resource
+import statistics
+import subprocess
+import sys
+import tempfile
+import time
+from datetime import UTC, datetime
+from fractions import Fraction
+from importlib.metadata import version
+from pathlib import Path
+from typing import Any
+
+from matrices import MATRICES, Entry, Rows
+
+ROOT = Path(__file__).parents[2]
+SMOKE_CUTOFF = 5.0
+# The checkout that this file is in is what is timed, installed or not.
+ENVIRONMENT = {**os.environ, "PYTHONPATH": str(ROOT)}
+Result = dict[str, Any]
+
+
+def main() -> int:
+    """Run the benchmark that the command line asks for and return the exit status."""
+    options = arguments()
+    if options.worker:
+        print(json.dumps(WORKERS[options.worker](MATRICES[options.names[0]][0]())))
+        return 0
+    cutoff = options.cutoff or (SMOKE_CUTOFF if options.smoke else 60.0)
+    names = options.names or [n for n, (_, small) in MATRICES.items() if small or not options.smoke]
+    results = []
+    for name in names:
+        if sys.stderr.isatty():
+            print(f"{name} ...", file=sys.stderr)
+        results.append(compare(name, cutoff))
+    processes = whole_processes(repeats=1 if options.smoke else 3)
+    show(results, processes, cutoff)
+    if options.json:
+        report = {**machine(), "cutoff": cutoff, "results": results, "processes": processes}
+        options.json.write_text(json.dumps(report, indent=2) + "\n", encoding="utf-8")
+    wrong = [r["name"] for r in results if not r["ours"].get("holds", "cut off" in r["ours"])]
+    if wrong:
+        print(f"not proved: {', '.join(wrong)}", file=sys.stderr)
+    return int(bool(wrong))
+
+
+def arguments() -> argparse.Namespace:
+    parser = argparse.ArgumentParser(description=(__doc__ or "").split("\n", maxsplit=1)[0])
+    parser.add_argument("names", nargs="*", metavar="NAME", help="run only these matrices")
+    parser.add_argument("--smoke", action="store_true", help="the small ones, a short cut-off")
+    parser.add_argument("--cutoff", type=float, metavar="S", help="seconds given to one call")
+    parser.add_argument("--json", type=Path, metavar="FILE", help="keep the results here")
+    parser.add_argument("--worker", choices=WORKERS, help=argparse.SUPPRESS)
+    options = parser.parse_args()
+    unknown = set(options.names) - set(MATRICES)
+    if unknown:
+        parser.error(f"no matrix is called {', '.join(sorted(unknown))}: {', '.join(MATRICES)}")
+    return options
+
+
+def ours(rows: Rows) -> Result:
+    """Time `respond` and the exact proof; count the operations a reader sees."""
+    import closedform  # noqa: PLC0415 - a worker loads its own side only
+    from closedform.notation.expression import operations  # noqa: PLC0415
+
+    def answer(matrix: Rows) -> tuple[Any, Any]:
+        model = closedform.model(
+            title="timed",
+            states=[f"x{i + 1}" for i in range(len(matrix))],
+            matrix=[[model_entry(entry) for entry in row] for row in matrix],
+            initial=[1] * len(matrix),
+        )
+        response = closedform.respond(model)
+        return response.transition, closedform.verify(response)
+
+    answer([[Fraction(-1), Fraction(1)], [Fraction(-1), Fraction(-1)]])
+    start = time.perf_counter()
+    transition, record = answer(rows)
+    seconds = time.perf_counter() - start
+    count = sum(operations(entry) for row in transition for entry in row)
+    return {"seconds": seconds, "operations": count, "holds": record.holds, "peak": peak()}
+
+
+def sympys(rows: Rows) -> Result:
+    """Time SymPy's exponential of A t, or say what it raised."""
+    import sympy  # noqa: PLC0415 - a worker loads its own side only
+
+    t = sympy.Symbol("t", real=True)
+
+    def number(entry: Entry) -> sympy.Expr:
+        factor, radicand = entry if isinstance(entry, tuple) else (entry, 1)
+        return sympy.Rational(factor.numerator, factor.denominator) * sympy.sqrt(radicand)
+
+    def answer(matrix: Rows) -> sympy.Matrix:
+        return (sympy.Matrix([[number(entry) for entry in row] for row in matrix]) * t).exp()
+
+    answer([[Fraction(-1), Fraction(1)], [Fraction(-1), Fraction(-1)]])
+    start = time.perf_counter()
+    try:
+        found = answer(rows)
+    except Exception as error:  # noqa: BLE001 - whatever it raises is the result
+        seconds = time.perf_counter() - start
+        return {"raised": type(error).__name__, "after": seconds, "peak": peak()}
+    seconds = time.perf_counter() - start
+    count = sum(int(sympy.count_ops(entry)) for entry in found)
+    return {"seconds": seconds, "operations": count, "peak": peak()}
+
+
+WORKERS = {"ours": ours, "sympy": sympys}
+
+
+def model_entry(entry: Entry) -> Fraction | str:
+    return f"{entry[0]}*sqrt({entry[1]})" if isinstance(entry, tuple) else entry
+
+
+def peak() -> float:
+    """Return this process's peak memory in MiB (Linux counts in KiB)."""
+    return resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024
+
+
+def compare(name: str, cutoff: float) -> Result:
+    order = len(MATRICES[name][0]())
+    return {"name": name, "n": order, **{side: run(side, name, cutoff) for side in WORKERS}}
+
+
+def run(side: str, name: str, cutoff: float) -> Result:
+    """Run one worker, ended at the cut-off (a second more is given to start it)."""
+    command = [sys.executable, __file__, "--worker", side, name]
+    try:
+        done = subprocess.run(
+            command,
+            capture_output=True,
+            text=True,
+            timeout=cutoff + 1,
+            cwd=ROOT,
+            env=ENVIRONMENT,
+            check=False,
+        )
+    except subprocess.TimeoutExpired:
+        return {"cut off": cutoff}
+    if done.returncode:
+        print(done.stderr, file=sys.stderr)
+        lines = done.stderr.strip().splitlines() or [f"ended by signal {-done.returncode}"]
+        return {"raised": lines[-1].split(":")[0].rsplit(".", maxsplit=1)[-1]}
+    result: Result = json.loads(done.stdout)
+    return result
+
+
+def whole_processes(repeats: int) -> dict[str, float | str]:
+    """Return the shortest time of whole commands, start of the interpreter included."""
+    model = ROOT / "templates" / "starters" / "two_mass_frame.toml"
+    with tempfile.TemporaryDirectory() as folder:
+        commands = {
+            "closedform writeup, 4 states": [
+                "-m",
+                "closedform",
+                "writeup",
+                str(model),
+                "--into",
+                folder,
+            ],
+            "closedform --help": ["-m", "closedform", "--help"],
+            'python -c "import sympy"': ["-c", "import sympy"],
+        }
+        return {name: shortest(command, repeats) for name, command in commands.items()}
+
+
+def shortest(command: list[str], repeats: int) -> float | str:
+    times = []
+    for _ in range(repeats):
+        start = time.perf_counter()
+        done = subprocess.run(
+            [sys.executable, *command],
+            capture_output=True,
+            text=True,
+            cwd=ROOT,
+            env=ENVIRONMENT,
+            check=False,
+        )
+        times.append(time.perf_counter() - start)
+        if done.returncode:
+            return f"exit status {done.returncode}"
+    return min(times)
+
+
+def show(results: list[Result], processes: dict[str, float | str], cutoff: float) -> None:
+    """Print the table, the median ratio and the whole-process times."""
+    from rich.console import Console  # noqa: PLC0415 - the workers do without it
+    from rich.table import Table  # noqa: PLC0415
+
+    table = Table(title=f"e^(At) with its proof beside SymPy (cut-off {cutoff:g} s)")
+    table.add_column("matrix")
+    for heading in ("n", "ours s", "SymPy s", "ratio", "ops", "SymPy ops", "MiB", "SymPy MiB"):
+        table.add_column(heading, justify="right")
+    for r in results:
+        left, right = r["ours"], r["sympy"]
+        table.add_row(
+            r["name"],
+            str(r["n"]),
+            outcome(left),
+            outcome(right),
+            shown(ratio(r), ".1f"),
+            shown(left.get("operations"), "d"),
+            shown(right.get("operations"), "d"),
+            shown(left.get("peak"), ".0f"),
+            shown(right.get("peak"), ".0f"),
+        )
+    console = Console(width=None if sys.stdout.isatty() else 120)
+    console.print(table)
+    ratios = [x for x in map(ratio, results) if x is not None]
+    if ratios:
+        console.print(
+            f"SymPy finishes {len(ratios)} of {len(results)};"
+            f" where it does, the median ratio is {statistics.median(ratios):.1f}"
+        )
+    for name, seconds in processes.items():
+        text = seconds if isinstance(seconds, str) else f"{seconds:.2f} s"
+        console.print(f"{name}: {text}", markup=False, highlight=False)
+
+
+def ratio(result: Result) -> float | None:
+    """Return SymPy's seconds over ours where both have finished."""
+    left, right = result["ours"].get("seconds"), result["sympy"].get("seconds")
+    return right / left if left and right else None
+
+
+def outcome(side: Result) -> str:
+    if "cut off" in side:
+        return f"> {side['cut off']:g}"
+    if "raised" in side:
+        return str(side["raised"])
+    proof = "" if side.get("holds", True) else " REFUTED"
+    return f"{side['seconds']:.4f}{proof}"
+
+
+def shown(value: float | None, form: str) -> str:
+    return "" if value is None else format(value, form)
+
+
+def machine() -> Result:
+    """Return what the numbers depend on: machine, versions and the day."""
+    cpu = Path("/proc/cpuinfo")
+    lines = cpu.read_text(encoding="utf-8").splitlines() if cpu.exists() else []
+    models = [line.split(":", 1)[1].strip() for line in lines if line.startswith("model name")]
+    return {
+        "date": datetime.now(UTC).date().isoformat(),
+        "machine": models[0] if models else platform.processor(),
+        "cores": os.cpu_count(),
+        "python": platform.python_version(),
+        **{name: version(name) for name in ("sympy", "python-flint")},
+    }
+
+
+if __name__ == "__main__":
+    sys.exit(main())
