@@ -4,25 +4,32 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from fractions import Fraction
+from typing import Protocol
 
-from flint import acb_poly, arb, fmpq
-
-from closedform.algebra.surds import SurdSum
-
-Exact = int | Fraction | SurdSum
+from flint import acb_poly, fmpq, fmpq_poly
 
 
-def fractions_of(numbers: Sequence[Exact]) -> tuple[Fraction, ...]:
-    """Return rational numbers as fractions.  Raises ValueError if a root is among them."""
-    return tuple(x.as_fraction() if isinstance(x, SurdSum) else Fraction(x) for x in numbers)
+class Rational(Protocol):
+    """An exact rational number of whichever kind: int, Fraction, FLINT's or SymPy's."""
+
+    @property
+    def numerator(self) -> int: ...
+
+    @property
+    def denominator(self) -> int: ...
 
 
-def ball_of(x: Exact) -> arb:
-    """Return a ball around an exact number at the working precision."""
-    terms = x.terms if isinstance(x, SurdSum) else ((1, Fraction(x)),)
-    return sum((arb(fmpq(c.numerator, c.denominator)) * arb(d).sqrt() for d, c in terms), arb(0))
+def fractions_of(numbers: Sequence[Rational]) -> tuple[Fraction, ...]:
+    """Return rational numbers as fractions.  A number with a root in it has no numerator."""
+    return tuple(Fraction(int(x.numerator), int(x.denominator)) for x in numbers)
 
 
-def coefficients_of(highest_first: Sequence[Exact]) -> acb_poly:
-    """Return the polynomial with these coefficients, to evaluate at balls."""
-    return acb_poly([ball_of(c) for c in reversed(highest_first)])
+def polynomial_of(highest_first: Sequence[Rational]) -> fmpq_poly:
+    """Return the polynomial with these rational coefficients."""
+    coefficients = reversed(fractions_of(highest_first))
+    return fmpq_poly([fmpq(c.numerator, c.denominator) for c in coefficients])
+
+
+def at_balls(p: fmpq_poly) -> acb_poly:
+    """Return the same polynomial, to evaluate at balls of the working precision."""
+    return acb_poly(p)

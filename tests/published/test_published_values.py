@@ -10,10 +10,10 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from flint import acb, acb_mat, arb, ctx, fmpq, fmpq_poly
+from flint import acb, acb_mat, arb, ctx
 
 import closedform
-from tests.exact import coefficients_of, fractions_of
+from tests.exact import at_balls, fractions_of, polynomial_of
 from tests.published.formulas import ball
 
 VALUES = {
@@ -180,9 +180,7 @@ def frequencies(_: Value, response: Any, expected: Value) -> None:
     ours = [
         root.imag
         for factor in response.spectrum.factors
-        for root, _ in fmpq_poly(
-            [fmpq(c.numerator, c.denominator) for c in reversed(fractions_of(factor.polynomial))]
-        ).complex_roots()
+        for root, _ in polynomial_of(factor.polynomial).complex_roots()
         if root.imag > 0
     ]
     assert len(ours) == len(expected["values"])
@@ -233,7 +231,7 @@ def arb_of(text: str) -> arb:
 
 def factors_of(response: Any) -> list[tuple[Any, Any]]:
     """Return each factor's polynomial, evaluable at a ball, beside the factor."""
-    return [(coefficients_of(f.polynomial), f) for f in response.spectrum.factors]
+    return [(at_balls(polynomial_of(f.polynomial)), f) for f in response.spectrum.factors]
 
 
 CASES = [
