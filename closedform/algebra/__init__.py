@@ -1,1 +1,1 @@
-
+"""Exact mathematics: fields, spectra, canonical forms, exponentials.  Knows no files."""

@@ -17,7 +17,7 @@ __all__ = ["RootMatrix", "coefficients_low_first", "taylor_at_root"]
 
 def coefficients_low_first(polynomial: Polynomial, length: int) -> list[Scalar]:
     """Return the coefficients of 1, lambda, … padded with zeros to `length`."""
-    coefficients = polynomial.to_list()[::-1]
+    coefficients: list[Scalar] = polynomial.to_list()[::-1]
     return coefficients + [polynomial.dom.zero] * (length - len(coefficients))
 
 

@@ -7,18 +7,20 @@ real roots of a polynomial q (undamped modes, where mu = -omega^2); and named ro
 from __future__ import annotations
 
 from dataclasses import dataclass
-from functools import cached_property
-from typing import Literal
+from functools import cached_property, lru_cache
+from operator import itemgetter
+from typing import Any, Literal
 
 from flint import acb, acb_poly, arb, ctx, fmpz_poly
 
 from closedform.algebra.field import BaseField, Polynomial, Scalar, rational
 
-__all__ = ["RootForm", "RootSet", "arrangement", "enclosed_roots", "root_set"]
+__all__ = ["RootForm", "RootSet", "arrangement", "enclosed_roots", "root_set", "rounded"]
 
 RootForm = Literal["single", "quadratic", "even", "named"]
 
-_SORTING_BITS = 192
+_RESOLUTION = 96
+_SORTING_BITS = 2 * _RESOLUTION + 64
 
 
 @dataclass(frozen=True)
@@ -27,6 +29,7 @@ class RootSet:
 
     `centre` is their mean a.  For the forms "quadratic" and "even", p(s) = q((s - a)^2)
     with `squares` = q, whose roots mu are all real, so that the roots are a ± sqrt(mu).
+    "even" is said where it helps: over Q with q of degree 2, or with all mu negative.
     """
 
     field: BaseField
@@ -55,7 +58,7 @@ class RootSet:
         if self.squares is None:
             raise ValueError(f"the form {self.form!r} has no squares")
         balls = [root.real for root in enclosed_roots(self.field, self.squares)]
-        return tuple(sorted(balls, key=lambda mu: _rounded(abs(mu))))
+        return tuple(sorted(balls, key=lambda mu: rounded(abs(mu))))
 
 
 def root_set(field: BaseField, p: Polynomial) -> RootSet:
@@ -71,8 +74,10 @@ def root_set(field: BaseField, p: Polynomial) -> RootSet:
     if d == 2:
         return RootSet(field, p, "quadratic", centre, squares)
     with ctx.workprec(_SORTING_BITS):
-        all_real = all(mu.imag == 0 for mu in enclosed_roots(field, squares))
-    if all_real:
+        found = enclosed_roots(field, squares)
+    all_real = all(mu.imag == 0 for mu in found)
+    two_surds = len(found) == 2 and not field.radicands
+    if all_real and (two_surds or all(mu.real < 0 for mu in found)):
         return RootSet(field, p, "even", centre, squares)
     return RootSet(field, p, "named", centre)
 
@@ -82,13 +87,35 @@ def enclosed_roots(field: BaseField, p: Polynomial) -> tuple[acb, ...]:
 
     Ordered by real part, then imaginary part; real roots have imaginary part exactly 0.
     """
-    if not field.radicands:
-        _, primitive = p.clear_denoms()
-        integral = [int(rational(c)) for c in reversed(primitive.to_list())]
-        balls = [root for root, _ in fmpz_poly(integral).complex_roots()]
-    else:
-        balls = _roots_over_surds(field, p)
-    return tuple(sorted(balls, key=lambda z: (_rounded(z.real), _rounded(z.imag))))
+    return _enclosed_roots(field, p, ctx.prec)
+
+
+@lru_cache(maxsize=256)
+def _enclosed_roots(field: BaseField, p: Polynomial, bits: int) -> tuple[acb, ...]:
+    """The order must not hang on the precision, so it is found at a fine one.
+
+    Real parts that agree to `resolution` bits count as equal; distinct roots that agree
+    altogether ask for a finer look.
+    """
+    resolution = _RESOLUTION
+    while True:
+        fine = max(bits, 2 * resolution + 64)
+        with ctx.workprec(fine):
+            balls = _isolated_roots(field, p, fine)
+            keys = [(rounded(z.real, resolution), rounded(z.imag, resolution)) for z in balls]
+        if len(set(keys)) == len(keys):
+            return tuple(z for _, z in sorted(zip(keys, balls, strict=True), key=itemgetter(0)))
+        resolution *= 2
+
+
+def _isolated_roots(field: BaseField, p: Polynomial, bits: int) -> list[acb]:
+    if field.radicands:
+        return _roots_over_surds(field, p, bits)
+    _, primitive = p.clear_denoms()
+    integral = [int(rational(c)) for c in reversed(primitive.to_list())]
+    # The type stubs leave out that the roots come with their multiplicities.
+    pairs: Any = fmpz_poly(integral).complex_roots()
+    return [root for root, _ in pairs]
 
 
 def arrangement(roots: RootSet) -> tuple[object, ...]:
@@ -97,12 +124,11 @@ def arrangement(roots: RootSet) -> tuple[object, ...]:
     Only the order of printing depends on it; no equality is decided here.
     """
     with ctx.workprec(_SORTING_BITS):
-        leading = min(((-_rounded(z.real), _rounded(abs(z.imag))) for z in roots.enclosures()))
+        leading = min((-rounded(z.real), rounded(abs(z.imag))) for z in roots.enclosures())
     return (*leading, int(roots.p.degree()))
 
 
-def _roots_over_surds(field: BaseField, p: Polynomial) -> list[acb]:
-    wanted = ctx.prec
+def _roots_over_surds(field: BaseField, p: Polynomial, wanted: int) -> list[acb]:
     bits = wanted + 64
     while True:
         with ctx.workprec(bits):
@@ -121,6 +147,9 @@ def _meets_only_itself(z: acb, all_roots: list[acb]) -> bool:
     return [w for w in all_roots if w.overlaps(mirrored)] == [z]
 
 
-def _rounded(ball: arb) -> int:
-    """The midpoint in units of 2^-96, so that balls around one number compare equal."""
-    return int((ball.mid() * arb(2) ** 96 + arb(0.5)).floor().unique_fmpz())
+def rounded(ball: arb, resolution: int = _RESOLUTION) -> int:
+    """Return the midpoint in units of 2^-resolution: small balls around one number agree."""
+    # A midpoint is a dyadic rational: mantissa times a power of two.
+    mantissa, exponent = ball.mid().man_exp()
+    shift = int(exponent) + resolution
+    return int(mantissa) << shift if shift >= 0 else (int(mantissa) >> -shift - 1) + 1 >> 1

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property, reduce
+from itertools import pairwise
 
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
 from closedform.algebra.roots import RootSet, arrangement, root_set
@@ -73,8 +74,8 @@ def spectrum_of(field: BaseField, matrix: FieldMatrix) -> Spectrum:
     characteristic = field.polynomial(matrix.charpoly())
     _, factored = characteristic.factor_list()
     factors = []
-    for p, multiplicity in factored:
-        p = p.monic()
+    for part, multiplicity in factored:
+        p = part.monic()
         blocks = (1,) if multiplicity == 1 else _blocks(field, matrix, p, multiplicity)
         factors.append(Factor(p, blocks, root_set(field, p)))
     return Spectrum(
@@ -102,7 +103,7 @@ def _blocks(
     while n - ranks[-1] < multiplicity * d:
         power = power * base
         ranks.append(power.rank())
-    at_least = [(high - low) // d for high, low in zip(ranks, ranks[1:], strict=False)]
+    at_least = [(high - low) // d for high, low in pairwise(ranks)]
     sizes = [
         size
         for size in range(len(at_least), 0, -1)

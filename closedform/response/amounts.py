@@ -1,0 +1,184 @@
+"""Writing exact factors: signs, fractions and square roots gathered the short way."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from fractions import Fraction
+from math import gcd, isqrt, lcm
+
+from closedform.algebra.surds import SurdSum
+from closedform.notation.expression import (
+    Call,
+    Expression,
+    Negation,
+    Number,
+    Product,
+    Quotient,
+    Sum,
+    number,
+    operations,
+)
+
+__all__ = [
+    "content_of",
+    "negated",
+    "opened",
+    "radical_formula",
+    "square_root_of_surd",
+    "sum_of",
+    "surd_formula",
+    "weighted",
+]
+
+ONE = Number(Fraction(1))
+
+
+def square_root_of_surd(value: SurdSum) -> SurdSum | None:
+    """Return the square root of a number > 0 as a surd sum, or None if it is none.
+
+    sqrt(A + B sqrt(d)) = sqrt((A + c)/2) ± sqrt((A - c)/2) when c = sqrt(A^2 - B^2 d) is
+    rational.  Source:  Euclid, Elements, book X; common practice.
+    """
+    if value.is_rational:
+        return value.sqrt()
+    terms = dict(value.terms)
+    whole = terms.pop(1, Fraction(0))
+    if len(terms) != 1 or whole <= 0:
+        return None
+    ((radicand, slope),) = terms.items()
+    norm = whole * whole - slope * slope * radicand
+    if norm < 0 or not _is_square(norm):
+        return None
+    c = _root(norm)
+    plus = SurdSum.rational((whole + c) / 2).sqrt()
+    minus = SurdSum.rational((whole - c) / 2).sqrt()
+    return plus + minus if slope > 0 else plus - minus
+
+
+def radical_formula(square: SurdSum) -> Expression:
+    """Return the formula of sqrt(square), without a nested root where there is a short form."""
+    root = square_root_of_surd(square)
+    return Call("sqrt", surd_formula(square)) if root is None else surd_formula(root)
+
+
+def surd_formula(value: SurdSum) -> Expression:
+    """Return a number as a formula, denominators gathered, a positive term first."""
+    return weighted(value, [], []) if not value.is_zero else Number(Fraction(0))
+
+
+def weighted(
+    value: SurdSum, factors: Sequence[Expression], divisors: Sequence[Expression]
+) -> Expression:
+    """Return value · factors / divisors as one term, its sign outside.
+
+    `value` is not zero.  Of the equal ways to write a single root, p sqrt(d)/q or
+    p/(q sqrt(d)), the one with fewer operations is taken.
+    """
+    if all(c < 0 for _, c in value.terms) or (
+        len(value.terms) > 1 and sum(c < 0 for _, c in value.terms) * 2 > len(value.terms)
+    ):
+        return Negation(weighted(-value, factors, divisors))
+    denominator = lcm(*(c.denominator for _, c in value.terms))
+    if len(value.terms) > 1:
+        common = gcd(*(c.numerator * (denominator // c.denominator) for _, c in value.terms))
+        terms = [
+            (_product([Number(Fraction(abs(n))), _surd(d)]), n < 0)
+            for d, n in ((d, int(c * denominator) // common) for d, c in value.terms)
+        ]
+        terms.sort(key=lambda term: term[1])
+        total = Sum(tuple(Negation(term) if minus else term for term, minus in terms))
+        return _fraction(
+            [Number(Fraction(common)), total, *factors], [Number(Fraction(denominator)), *divisors]
+        )
+    ((radicand, coefficient),) = value.terms
+    top, bottom = Fraction(coefficient.numerator), Fraction(coefficient.denominator)
+    usual = _fraction([Number(top), _surd(radicand), *factors], [Number(bottom), *divisors])
+    if radicand == 1:
+        return usual
+    turned = coefficient * radicand
+    other = _fraction(
+        [Number(Fraction(turned.numerator)), *factors],
+        [Number(Fraction(turned.denominator)), _surd(radicand), *divisors],
+    )
+    return other if operations(other) < operations(usual) else usual
+
+
+def sum_of(terms: Sequence[Expression]) -> Expression:
+    """Return the sum of the terms, brackets opened, a positive term first where there is one.
+
+    Terms that are all negative give one `Negation`; `opened` turns it into -a - b.
+    """
+    flat = [part for term in terms for part in _parts(term)]
+    if not flat:
+        return Number(Fraction(0))
+    if len(flat) == 1:
+        return flat[0]
+    if all(isinstance(term, Negation) for term in flat):
+        return Negation(Sum(tuple(negated(term) for term in flat)))
+    lead = next(i for i, term in enumerate(flat) if not isinstance(term, Negation))
+    return Sum((flat[lead], *flat[:lead], *flat[lead + 1 :]))
+
+
+def opened(expression: Expression) -> Expression:
+    """Return -(a + b) as -a - b."""
+    if isinstance(expression, Negation) and isinstance(expression.operand, Sum):
+        return Sum(tuple(negated(term) for term in expression.operand.terms))
+    return expression
+
+
+def _parts(term: Expression) -> tuple[Expression, ...]:
+    inside = opened(term)
+    return inside.terms if isinstance(inside, Sum) else (inside,)
+
+
+def negated(expression: Expression) -> Expression:
+    """Return the expression with the opposite sign."""
+    return expression.operand if isinstance(expression, Negation) else Negation(expression)
+
+
+def content_of(values: Sequence[SurdSum]) -> tuple[SurdSum, ...]:
+    """Return common factors that may be put in front of the values, 1 always among them.
+
+    The others are 1/denominator, the rational content, and that times a common root.
+    """
+    coefficients = [c for value in values for _, c in value.terms]
+    bottom = lcm(*(c.denominator for c in coefficients))
+    top = gcd(*(c.numerator for c in coefficients))
+    found = [Fraction(1), Fraction(1, bottom), Fraction(top, bottom)]
+    contents = [SurdSum.rational(c) for c in dict.fromkeys(found)]
+    radicands = {value.terms[0][0] for value in values if len(value.terms) == 1}
+    if len(radicands) == 1 and radicands != {1} and all(len(v.terms) == 1 for v in values):
+        root = SurdSum.of({radicands.pop(): Fraction(1)})
+        contents += [content * root for content in contents]
+    return tuple(contents)
+
+
+def _surd(radicand: int) -> Expression:
+    return ONE if radicand == 1 else Call("sqrt", number(radicand))
+
+
+def _product(factors: Sequence[Expression]) -> Expression:
+    flat: list[Expression] = []
+    for factor in factors:
+        flat.extend(factor.factors if isinstance(factor, Product) else [factor])
+    flat = [factor for factor in flat if factor != ONE]
+    if not flat:
+        return ONE
+    return flat[0] if len(flat) == 1 else Product(tuple(flat))
+
+
+def _fraction(above: Sequence[Expression], below: Sequence[Expression]) -> Expression:
+    top, bottom = _product(above), _product(below)
+    if bottom == ONE:
+        return top
+    if isinstance(top, Number) and isinstance(bottom, Number):
+        return Number(top.value / bottom.value)
+    return Quotient(top, bottom)
+
+
+def _is_square(value: Fraction) -> bool:
+    return all(isqrt(n) ** 2 == n for n in (value.numerator, value.denominator))
+
+
+def _root(value: Fraction) -> Fraction:
+    return Fraction(isqrt(value.numerator), isqrt(value.denominator))

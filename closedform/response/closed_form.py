@@ -1,0 +1,195 @@
+"""From exact amounts of modes to the formula that is printed: the shortest of equal forms.
+
+A function is a sum of groups that share an exponential.  Common factors may stand in
+front of the whole, in front of a group, or nowhere; exponentials in pairs a ± w may be
+written with cosh and sinh or on their own.  Every combination is written out and the
+one with the fewest operations is kept; of equals, the earlier.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+
+from closedform.algebra.surds import SurdSum
+from closedform.notation.expression import (
+    Call,
+    Expression,
+    Name,
+    Negation,
+    Number,
+    Power,
+    operations,
+)
+from closedform.response.amounts import content_of, opened, sum_of, weighted
+from closedform.response.modes import Amount, Contribution
+
+__all__ = ["closed_form", "exponential_of_rate"]
+
+_UNIT = SurdSum.rational(1)
+
+
+@dataclass(frozen=True)
+class _Term:
+    """An amount of power · kernel inside a group: power is t^j, kernel cos, sin, cosh or sinh."""
+
+    amount: Amount
+    power: Expression | None
+    kernel: Expression | None
+
+
+@dataclass(frozen=True)
+class _Group:
+    """The terms under one exponential (None for e^0)."""
+
+    exponential: Expression | None
+    terms: tuple[_Term, ...]
+
+
+def closed_form(contributions: Sequence[Contribution], time: str) -> Expression:
+    """Return the shortest formula of a sum of contributions, as a function of `time`."""
+    forms = [_written(_groups(contributions, time, paired=True))]
+    if any(_splits(c) for c in contributions):
+        forms.append(_written(_groups(contributions, time, paired=False)))
+    return opened(min(forms, key=operations))
+
+
+def exponential_of_rate(rate: SurdSum | str, time: str) -> Expression | None:
+    """Return e^(rate t), or None for the rate 0."""
+    exponent = _times_time(rate, time)
+    return None if exponent is None else Call("exp", exponent)
+
+
+def _times_time(rate: SurdSum | str, time: str) -> Expression | None:
+    if isinstance(rate, str):
+        return weighted(_UNIT, [Name(rate), Name(time)], [])
+    return None if rate.is_zero else weighted(rate, [Name(time)], [])
+
+
+def _power_of_time(time: str, power: int) -> Expression | None:
+    if power == 0:
+        return None
+    return Name(time) if power == 1 else Power(Name(time), Number(Fraction(power)))
+
+
+def _surd(value: SurdSum | str | None) -> SurdSum:
+    """Narrow the type of a number of which `_splits` said that it has no name."""
+    if not isinstance(value, SurdSum):
+        raise TypeError(f"a surd sum is needed here, not {value!r}")
+    return value
+
+
+def _splits(contribution: Contribution) -> bool:
+    """Whether cosh and sinh can be written as exponentials with surd rates."""
+    mode = contribution.mode
+    return (
+        mode.kind == "hyperbolic"
+        and isinstance(mode.rate, SurdSum)
+        and isinstance(mode.frequency, SurdSum)
+    )
+
+
+def _groups(
+    contributions: Sequence[Contribution], time: str, *, paired: bool
+) -> tuple[_Group, ...]:
+    found: dict[Expression | None, list[_Term]] = {}
+    for contribution in contributions:
+        for exponential, term in _terms(contribution, time, paired=paired):
+            if not term.amount.is_zero:
+                found.setdefault(exponential, []).append(term)
+    return tuple(_Group(e, tuple(terms)) for e, terms in found.items())
+
+
+def _terms(
+    contribution: Contribution, time: str, *, paired: bool
+) -> list[tuple[Expression | None, _Term]]:
+    mode = contribution.mode
+    result: list[tuple[Expression | None, _Term]] = []
+    if not paired and _splits(contribution):
+        half = SurdSum.rational(Fraction(1, 2))
+        rate, gap = _surd(mode.rate), _surd(mode.frequency)
+        for sign in (1, -1):  # the slower of the two first
+            signed = SurdSum.rational(sign)
+            exponential = exponential_of_rate(rate + signed * gap, time)
+            for power, (even, odd) in enumerate(contribution.amounts):
+                amount = Amount((even.value + signed * odd.value) * half)
+                result.append((exponential, _Term(amount, _power_of_time(time, power), None)))
+        return result
+    exponential = exponential_of_rate(mode.rate, time)
+    names = {"real": (None, None), "circular": ("cos", "sin"), "hyperbolic": ("cosh", "sinh")}
+    for power, amounts in enumerate(contribution.amounts):
+        for function, amount in zip(names[mode.kind], amounts, strict=True):
+            kernel = None
+            if function is not None and mode.frequency is not None:
+                argument = _times_time(mode.frequency, time)
+                if argument is not None:
+                    kernel = Call(function, argument)
+            result.append((exponential, _Term(amount, _power_of_time(time, power), kernel)))
+    return result
+
+
+def _written(groups: Sequence[_Group]) -> Expression:
+    if not groups:
+        return Number(Fraction(0))
+    if len(groups) == 1:
+        return _written_group(groups[0])
+    forms = []
+    for front in _fronts([term for group in groups for term in group.terms]):
+        inside = sum_of([_written_group(_divided(group, front)) for group in groups])
+        forms.append(inside if front == _UNIT else _signed_product(front, [], inside))
+    return min(forms, key=operations)
+
+
+def _fronts(terms: Sequence[_Term]) -> tuple[SurdSum, ...]:
+    values = [term.amount.value for term in terms]
+    if any(term.amount.name is not None for term in terms):
+        return (_UNIT,)
+    return content_of(values)
+
+
+def _divided(group: _Group, front: SurdSum) -> _Group:
+    if front == _UNIT:
+        return group
+    terms = tuple(
+        _Term(
+            Amount(term.amount.value / front, term.amount.name, term.amount.over),
+            term.power,
+            term.kernel,
+        )
+        for term in group.terms
+    )
+    return _Group(group.exponential, terms)
+
+
+def _written_group(group: _Group) -> Expression:
+    outside = [] if group.exponential is None else [group.exponential]
+    if len(group.terms) == 1:
+        return _written_term(group.terms[0], outside)
+    forms = []
+    for front in _fronts(group.terms):
+        terms = [_written_term(term, []) for term in _divided(group, front).terms]
+        inside = sum_of(terms)
+        forms.append(
+            inside if front == _UNIT and not outside else _signed_product(front, outside, inside)
+        )
+    return min(forms, key=operations)
+
+
+def _signed_product(front: SurdSum, outside: list[Expression], inside: Expression) -> Expression:
+    if isinstance(inside, Negation):
+        return weighted(-front, [*outside, inside.operand], [])
+    return weighted(front, [*outside, inside], [])
+
+
+def _written_term(term: _Term, outside: list[Expression]) -> Expression:
+    factors: list[Expression] = []
+    if term.amount.name is not None:
+        factors.append(Name(term.amount.name))
+    if term.power is not None:
+        factors.append(term.power)
+    factors += outside
+    if term.kernel is not None:
+        factors.append(term.kernel)
+    divisors: list[Expression] = [] if term.amount.over is None else [Name(term.amount.over)]
+    return weighted(term.amount.value, factors, divisors)

@@ -1,0 +1,258 @@
+"""The real modes of a spectrum, and the amounts in which they enter a function.
+
+A mode is one family of real functions e^(rate t) · {1 | cos, sin | cosh, sinh}(frequency t).
+Every exponential polynomial over the spectrum is a sum over modes and powers of t of an
+amount of the even function (1, cos, cosh) and an amount of the odd one (sin, sinh).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+from math import factorial
+from typing import Literal
+
+from flint import ctx
+
+from closedform.algebra.exponential import ModalTerm
+from closedform.algebra.field import Polynomial
+from closedform.algebra.roots import enclosed_roots, rounded
+from closedform.algebra.spectrum import Factor
+from closedform.algebra.surds import SurdSum
+from closedform.response.amounts import radical_formula, square_root_of_surd
+from closedform.response.names import NameBook, Radical, ResiduePart, RootPart
+
+__all__ = ["Amount", "Contribution", "Mode", "contributions", "modes_of"]
+
+Kind = Literal["real", "circular", "hyperbolic"]
+
+_SORTING_BITS = 192
+
+
+@dataclass(frozen=True)
+class Amount:
+    """An exact factor of a mode: a surd sum, or plus or minus a named constant.
+
+    `value` multiplies the constant `name` if there is one; `over` names a frequency that
+    divides it.
+    """
+
+    value: SurdSum
+    name: str | None = None
+    over: str | None = None
+
+    @property
+    def is_zero(self) -> bool:
+        """Whether the amount vanishes, exactly."""
+        return self.value.is_zero
+
+
+ZERO = Amount(SurdSum(()))
+
+
+@dataclass(frozen=True)
+class Mode:
+    """One mode of a factor: numbers are surd sums, or names of constants.
+
+    `which` is the place (from 1) of the mode's root with imaginary part >= 0 among the
+    roots of the factor, ordered by real and then imaginary part.
+    """
+
+    factor: Factor
+    kind: Kind
+    rate: SurdSum | str
+    frequency: SurdSum | str | None
+    which: int
+
+
+@dataclass(frozen=True)
+class Contribution:
+    """What a mode contributes: for each power of t, the even and the odd amount."""
+
+    mode: Mode
+    amounts: tuple[tuple[Amount, Amount], ...]
+
+
+def modes_of(factor: Factor, book: NameBook, *, name_surds: bool) -> tuple[Mode, ...]:
+    """Return the modes of a factor, slowest first; numbers without a short form get names.
+
+    With `name_surds`, a frequency such as sqrt(79)/4 is named too.
+    """
+    roots, field = factor.roots, factor.roots.field
+    centre = field.surds(roots.centre)
+    if roots.form == "single":
+        return (Mode(factor, "real", centre, None, 1),)
+    if roots.form == "quadratic":
+        return (_quadratic_mode(factor, centre, book, name_surds=name_surds),)
+    if roots.form == "even":
+        return _even_modes(factor, centre, book)
+    return _named_modes(factor, book)
+
+
+def contributions(
+    modes: Sequence[Mode], term: ModalTerm, row: int, column: int, book: NameBook
+) -> tuple[Contribution, ...]:
+    """Return what one entry of a modal term contributes to each of its factor's modes."""
+    entries = [residue.entry(row, column) for residue in term.residues]
+    found = []
+    for mode in modes:
+        amounts = [
+            _amounts(mode, entry, Fraction(1, factorial(power)), book)
+            for power, entry in enumerate(entries)
+        ]
+        while amounts and all(a.is_zero for a in amounts[-1]):
+            amounts.pop()
+        if amounts:
+            found.append(Contribution(mode, tuple(amounts)))
+    return tuple(found)
+
+
+def _quadratic_mode(factor: Factor, centre: SurdSum, book: NameBook, *, name_surds: bool) -> Mode:
+    field, discriminant = factor.roots.field, factor.roots.discriminant
+    circular = field.sign(discriminant) < 0
+    square = field.surds(-discriminant if circular else discriminant)
+    root = square_root_of_surd(square)
+    frequency: SurdSum | str
+    if root is not None and (root.is_rational or not name_surds):
+        frequency = root
+    else:
+        stem = "omega" if circular else "kappa"
+        frequency = book.name_of(stem, Radical(radical_formula(square)))
+    return Mode(factor, "circular" if circular else "hyperbolic", centre, frequency, 2)
+
+
+def _even_modes(factor: Factor, centre: SurdSum, book: NameBook) -> tuple[Mode, ...]:
+    roots, field = factor.roots, factor.roots.field
+    modes: list[Mode] = []
+    with ctx.workprec(_SORTING_BITS):
+        squares = roots.square_enclosures()
+        order = [rounded(z.imag) for z in roots.enclosures()]
+        reals = [rounded(z.real) for z in roots.enclosures()]
+        places = []
+        for mu in squares:
+            size = abs(mu).sqrt()
+            if mu < 0:
+                places.append(order.index(rounded(size)) + 1)
+            else:
+                places.append(reals.index(rounded(field.enclose(roots.centre) + size)) + 1)
+        negative = [bool(mu < 0) for mu in squares]
+    for circular, which in zip(negative, places, strict=True):
+        kind: Kind = "circular" if circular else "hyperbolic"
+        stem = "omega" if circular else "kappa"
+        mode = Mode(factor, kind, centre, None, which)
+        if _has_surd_squares(factor):
+            mu_value = surd_square(mode)
+            definition: Radical | RootPart = Radical(
+                radical_formula(-mu_value if circular else mu_value)
+            )
+        else:
+            definition = RootPart(field, factor.p, which, "imaginary")
+        modes.append(Mode(factor, kind, centre, book.name_of(stem, definition), which))
+    return tuple(modes)
+
+
+def _has_surd_squares(factor: Factor) -> bool:
+    return factor.degree == 4 and not factor.roots.field.radicands
+
+
+def _squares(factor: Factor) -> Polynomial:
+    if factor.roots.squares is None:
+        raise TypeError("only even factors have squares")
+    return factor.roots.squares
+
+
+def surd_square(mode: Mode) -> SurdSum:
+    """Return mu = b ± sqrt(E) for a mode a ± sqrt(mu) of an even quartic over Q."""
+    field = mode.factor.roots.field
+    _, b, c = (field.surds(x) for x in _squares(mode.factor).to_list())
+    mean = b * SurdSum.rational(Fraction(-1, 2))
+    half_gap = (mean * mean - c).sqrt()
+    with ctx.workprec(_SORTING_BITS):
+        root = mode.factor.roots.enclosures()[mode.which - 1]
+        offset = root - field.enclose(mode.factor.roots.centre)
+        upper = (offset * offset).real > field.enclose(field.scalar(mean))
+    return mean + half_gap if upper else mean - half_gap
+
+
+def _named_modes(factor: Factor, book: NameBook) -> tuple[Mode, ...]:
+    field, p = factor.roots.field, factor.p
+    with ctx.workprec(_SORTING_BITS):
+        found = [
+            (-rounded(z.real), rounded(z.imag), which, z.imag == 0)
+            for which, z in enumerate(enclosed_roots(field, p), start=1)
+            if not z.imag < 0
+        ]
+    modes = []
+    for _, _, which, real in sorted(found):
+        if real:
+            name = book.name_of("lambda", RootPart(field, p, which, "real"))
+            modes.append(Mode(factor, "real", name, None, which))
+        else:
+            rate = book.name_of("alpha", RootPart(field, p, which, "real"))
+            frequency = book.name_of("omega", RootPart(field, p, which, "imaginary"))
+            modes.append(Mode(factor, "circular", rate, frequency, which))
+    return tuple(modes)
+
+
+def _amounts(
+    mode: Mode, entry: Polynomial, weight: Fraction, book: NameBook
+) -> tuple[Amount, Amount]:
+    """The even and odd amount of e^(lambda t) entry(lambda)/p'(lambda), summed over the roots."""
+    if entry.is_zero:
+        return ZERO, ZERO
+    roots, field = mode.factor.roots, mode.factor.roots.field
+    scale = SurdSum.rational(weight)
+    if roots.form == "single":
+        return Amount(field.surds(entry.nth(0)) * scale), ZERO
+    if roots.form == "quadratic":
+        even = entry.nth(1)
+        odd = field.surds(entry.nth(0) + roots.centre * even) * scale
+        return Amount(field.surds(even) * scale), _over(odd, mode.frequency)
+    if roots.form == "even" and _has_surd_squares(mode.factor):
+        return _even_amounts(mode, entry, scale)
+    return _named_amounts(mode, entry, weight, book)
+
+
+def _over(value: SurdSum, frequency: SurdSum | str | None) -> Amount:
+    if value.is_zero:
+        return ZERO
+    if isinstance(frequency, SurdSum):
+        return Amount(value / frequency)
+    return Amount(value, over=frequency)
+
+
+def _even_amounts(mode: Mode, entry: Polynomial, scale: SurdSum) -> tuple[Amount, Amount]:
+    """With x = lambda - a and mu = x^2: R = R_e(mu) + x R_o(mu), and p' = 2 x q'(mu)."""
+    roots, field = mode.factor.roots, mode.factor.roots.field
+    moved = entry.shift(roots.centre)
+    r = [field.surds(moved.nth(k)) for k in range(4)]
+    mu = surd_square(mode)
+    slope = (mu + mu + field.surds(_squares(mode.factor).nth(1))).inverse() * scale
+    even = (r[1] + r[3] * mu) * slope
+    odd = (r[0] + r[2] * mu) * slope
+    return Amount(even), _over(odd, mode.frequency)
+
+
+def _named_amounts(
+    mode: Mode, entry: Polynomial, weight: Fraction, book: NameBook
+) -> tuple[Amount, Amount]:
+    field, p = mode.factor.roots.field, mode.factor.p
+    positive = field.sign(entry.LC()) > 0
+    sign = SurdSum.rational(1 if positive else -1)
+    numerator = entry if positive else -entry
+
+    def named(part: Literal["real", "imaginary"], factor: int) -> Amount:
+        definition = ResiduePart(field, p, mode.which, numerator, factor * weight, part)
+        return Amount(sign, name=book.name_of("C", definition))
+
+    if mode.kind == "real":
+        return named("real", 1), ZERO
+    even, odd = True, True
+    if mode.factor.roots.form == "even":  # with x = lambda - a, p' is odd in x
+        moved = entry.shift(mode.factor.roots.centre).to_list()[::-1]
+        even, odd = any(moved[1::2]), any(moved[0::2])
+    return (
+        named("real", 2) if even else ZERO,
+        named("imaginary", -2) if odd else ZERO,
+    )

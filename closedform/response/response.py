@@ -1,0 +1,184 @@
+"""What follows from a model: spectrum, canonical form, e^(At), the solution and the outputs."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+from functools import cached_property
+
+from flint import arb, arb_mat
+
+from closedform.algebra.canonical import JordanForm, jordan_form
+from closedform.algebra.exponential import (
+    ExponentialMatrix,
+    ModalTerm,
+    enclosed_to,
+    exponential_by_resolvent,
+    time_ball,
+)
+from closedform.algebra.field import BaseField, FieldMatrix, base_field
+from closedform.algebra.root_matrix import RootMatrix
+from closedform.algebra.spectrum import Factor, Spectrum, spectrum_of
+from closedform.algebra.surds import SurdSum
+from closedform.model.model import Model
+from closedform.notation.expression import Expression, operations
+from closedform.response.closed_form import closed_form
+from closedform.response.modes import Mode, contributions, modes_of
+from closedform.response.names import NameBook, NamedConstant, Radical
+
+__all__ = ["LARGEST_WRITTEN_OUT", "ClosedForms", "Response", "respond"]
+
+LARGEST_WRITTEN_OUT = 8
+"""Up to this many states e^(At) is written entry by entry; beyond, by its spectral form."""
+
+
+@dataclass(frozen=True)
+class ClosedForms:
+    """The formulas of a response, and the constants that they name.
+
+    `modes` and `impulses` follow the factors of the spectrum; an impulse is
+    g(t) = sum over the roots of e^(lambda t)/p'(lambda), given for degree 3 and more.
+    `transition` has n rows of n formulas, or is empty beyond `LARGEST_WRITTEN_OUT` states.
+    """
+
+    modes: tuple[tuple[Mode, ...], ...]
+    solution: tuple[Expression, ...]
+    outputs: tuple[Expression, ...]
+    transition: tuple[tuple[Expression, ...], ...]
+    impulses: tuple[Expression | None, ...]
+    constants: tuple[NamedConstant, ...]
+
+    @property
+    def operations(self) -> int:
+        """What there is to read: the operations in all formulas and written definitions."""
+        definitions = (c.definition for c in self.constants)
+        written = [d.formula for d in definitions if isinstance(d, Radical)]
+        rows = (*self.transition, self.solution, self.outputs, written)
+        return sum(operations(formula) for row in rows for formula in row)
+
+
+@dataclass(frozen=True)
+class Response:
+    """The exact response of a model.
+
+    Shapes:  `exponential` is e^(At), n x n; `state` is x(t), n x 1; `output` is y(t), or
+    None when the model asks for no outputs.
+    """
+
+    model: Model
+    field: BaseField
+    matrix: FieldMatrix
+    initial: FieldMatrix
+    spectrum: Spectrum
+    jordan: JordanForm
+    exponential: ExponentialMatrix
+    state: ExponentialMatrix
+    output: ExponentialMatrix | None
+
+    @cached_property
+    def closed_forms(self) -> ClosedForms:
+        """Every formula of the response, written out the short way."""
+        return written_out(self)
+
+    @property
+    def transition(self) -> tuple[tuple[Expression, ...], ...]:
+        """The entries of e^(At) as formulas; empty beyond `LARGEST_WRITTEN_OUT` states."""
+        return self.closed_forms.transition
+
+    @property
+    def solution(self) -> tuple[Expression, ...]:
+        """x(t) as one formula per state."""
+        return self.closed_forms.solution
+
+    @property
+    def outputs(self) -> tuple[Expression, ...]:
+        """One formula per output."""
+        return self.closed_forms.outputs
+
+    def transition_at(self, t: Fraction, digits: int = 30) -> list[list[arb]]:
+        """Return balls for the entries of e^(At) at an instant, settled to `digits` digits."""
+        return _rows(enclosed_to(lambda: self.exponential.enclosure(time_ball(t)), digits))
+
+    def solution_at(self, t: Fraction, digits: int = 30) -> list[arb]:
+        """Return balls for x(t) at an instant, settled to `digits` digits."""
+        balls = enclosed_to(lambda: self.state.enclosure(time_ball(t)), digits)
+        return [row[0] for row in _rows(balls)]
+
+
+def respond(model: Model) -> Response:
+    """Return the exact response of a model: e^(At), x(t) and the outputs."""
+    field = base_field(
+        number
+        for row in (*model.matrix, model.initial, *(o.weights for o in model.outputs))
+        for number in row
+    )
+    matrix = field.matrix([[field.scalar(entry) for entry in row] for row in model.matrix])
+    initial = field.matrix([[field.scalar(entry)] for entry in model.initial])
+    spectrum = spectrum_of(field, matrix)
+    exponential = exponential_by_resolvent(field, matrix, spectrum)
+    state = exponential.times(initial)
+    output = None
+    if model.outputs:
+        weights = [[field.scalar(w) for w in output.weights] for output in model.outputs]
+        output = state.after(field.matrix(weights))
+    jordan = jordan_form(field, matrix, spectrum)
+    return Response(model, field, matrix, initial, spectrum, jordan, exponential, state, output)
+
+
+def written_out(response: Response) -> ClosedForms:
+    """Return the formulas of a response, surd frequencies named where that is shorter."""
+    plain = _written(response, name_surds=False)
+    if not any(
+        mode.kind != "real"
+        and isinstance(mode.frequency, SurdSum)
+        and not mode.frequency.is_rational
+        for modes in plain.modes
+        for mode in modes
+    ):
+        return plain
+    return min(plain, _written(response, name_surds=True), key=lambda forms: forms.operations)
+
+
+def _written(response: Response, *, name_surds: bool) -> ClosedForms:
+    """Names are given in the order of printing: roots, solution, outputs, e^(At)."""
+    model, factors = response.model, response.spectrum.factors
+    book = NameBook(frozenset({*model.states, *(o.name for o in model.outputs), model.time}))
+    modes = tuple(modes_of(f, book, name_surds=name_surds) for f in factors)
+
+    def formula(function: ExponentialMatrix, row: int, column: int) -> Expression:
+        parts = [
+            contribution
+            for modes_of_factor, term in zip(modes, function.terms, strict=True)
+            for contribution in contributions(modes_of_factor, term, row, column, book)
+        ]
+        return closed_form(parts, model.time)
+
+    n = len(model.states)
+    solution = tuple(formula(response.state, i, 0) for i in range(n))
+    outputs: tuple[Expression, ...] = ()
+    if response.output is not None:
+        outputs = tuple(formula(response.output, i, 0) for i in range(len(model.outputs)))
+    transition: tuple[tuple[Expression, ...], ...] = ()
+    if n <= LARGEST_WRITTEN_OUT:
+        transition = tuple(
+            tuple(formula(response.exponential, i, k) for k in range(n)) for i in range(n)
+        )
+    impulses = tuple(
+        _impulse(response.field, factor, modes_of_factor, book, model.time)
+        if factor.degree > 2
+        else None
+        for factor, modes_of_factor in zip(factors, modes, strict=True)
+    )
+    return ClosedForms(modes, solution, outputs, transition, impulses, book.constants())
+
+
+def _impulse(
+    field: BaseField, factor: Factor, modes: tuple[Mode, ...], book: NameBook, time: str
+) -> Expression:
+    one = RootMatrix.constant(field, factor.p, field.identity(1))
+    term = ModalTerm(factor, (one,))
+    return closed_form(contributions(modes, term, 0, 0, book), time)
+
+
+def _rows(balls: arb_mat) -> list[list[arb]]:
+    return [[balls[i, k] for k in range(balls.ncols())] for i in range(balls.nrows())]

@@ -1,0 +1,221 @@
+"""The exact identities: each is a finite computation in a field, never a simplification.
+
+With F(t) = sum of e^(lambda t)/p'(lambda) t^j/j! R_j(lambda), the derivative F' has the
+coefficients lambda R_j + R_(j+1).  So F' = A F follows from (A - lambda) R_j = R_(j+1)
+with R_nu = 0, for every factor p and every j < nu; and F(0) is a sum of traces.
+"""
+
+from __future__ import annotations
+
+from functools import reduce
+
+from closedform.algebra.exponential import ExponentialMatrix
+from closedform.algebra.field import FieldMatrix
+from closedform.algebra.root_matrix import RootMatrix
+from closedform.algebra.spectrum import polynomial_of_matrix
+from closedform.response.response import Response
+from closedform.verification.record import Check
+
+__all__ = [
+    "chain_check",
+    "characteristic_polynomial_check",
+    "determinant_check",
+    "differential_equation_check",
+    "initial_value_check",
+    "output_check",
+    "routes_check",
+]
+
+
+def characteristic_polynomial_check(response: Response) -> Check:
+    """The factors multiply to c, c(A) = 0 (Cayley-Hamilton), and c has the trace of A."""
+    item = "c(A) = 0"
+    spectrum, field = response.spectrum, response.field
+    product = reduce(lambda f, g: f * g, (f.p**f.multiplicity for f in spectrum.factors))
+    if product != spectrum.characteristic_polynomial:
+        return Check(item, "refuted", "the factors do not multiply to the polynomial")
+    n = response.matrix.shape[0]
+    if -product.nth(n - 1) != _trace(response.matrix):
+        return Check(item, "refuted", f"the coefficient of lambda^{n - 1} is not -tr A")
+    value = polynomial_of_matrix(field, product, response.matrix)
+    fault = _first_nonzero(value)
+    if fault is not None:
+        return Check(item, "refuted", f"entry {fault} of c(A) is not zero")
+    return Check(
+        item,
+        "proved",
+        "the factors were multiplied out, A was put into the product: the zero matrix; "
+        "the sum of the eigenvalues is tr A",
+    )
+
+
+def differential_equation_check(item: str, function: ExponentialMatrix, a: FieldMatrix) -> Check:
+    """F' = A F, by comparing the coefficients of every e^(lambda t) t^j/j!."""
+    compared = 0
+    for term in function.terms:
+        residues = term.residues
+        for j, residue in enumerate(residues):
+            left = residue.shifted(a)
+            if residue.modulus != term.factor.p:
+                return Check(item, "refuted", "a coefficient belongs to other eigenvalues")
+            if j + 1 < len(residues):
+                left = left - residues[j + 1]
+            fault = _first_nonzero_over_roots(left)
+            if fault is not None:
+                place = f"entry {fault}, the coefficient of {_monomial(term.factor.degree, j)}"
+                return Check(item, "refuted", f"does not vanish in {place}")
+            compared += term.factor.degree
+    return Check(
+        item,
+        "proved",
+        f"substituted; the coefficient matrices of all {compared} functions e^(λt) t^j were "
+        "compared: zero in every entry",
+    )
+
+
+def initial_value_check(item: str, function: ExponentialMatrix, expected: FieldMatrix) -> Check:
+    """F(0) equals the expected matrix."""
+    fault = _first_nonzero(function.at_zero() - expected)
+    if fault is not None:
+        return Check(item, "refuted", f"entry {fault} differs at t = 0")
+    return Check(item, "proved", "t = 0 was put in; every entry is the one expected")
+
+
+def output_check(response: Response) -> Check:
+    """The outputs are the stated combinations of the states, coefficient by coefficient."""
+    item = "y = C x"
+    field, model = response.field, response.model
+    if response.output is None:
+        return Check(item, "not attempted", "the model asks for no outputs")
+    weights = field.matrix([[field.scalar(w) for w in o.weights] for o in model.outputs])
+    for written, state in zip(response.output.terms, response.state.terms, strict=True):
+        for left, right in zip(written.residues, state.residues, strict=True):
+            fault = _first_nonzero_over_roots(left - right.after(weights))
+            if fault is not None:
+                return Check(item, "refuted", f"output {fault[0]} is another combination")
+    return Check(item, "proved", "every coefficient of y is the stated combination of those of x")
+
+
+def state_check(response: Response) -> Check:
+    """x(t) = e^(At) x0, coefficient by coefficient."""
+    item = "x = e^(At) x0"
+    pairs = zip(response.state.terms, response.exponential.terms, strict=True)
+    for state, transition in pairs:
+        for left, right in zip(state.residues, transition.residues, strict=True):
+            fault = _first_nonzero_over_roots(left - right.before(response.initial))
+            if fault is not None:
+                return Check(item, "refuted", f"state {fault[0]} differs")
+    return Check(item, "proved", "e^(At) was multiplied by x0; all coefficients agree")
+
+
+def chain_check(response: Response) -> Check:
+    """A P = P J with P invertible: every chain steps down under A - lambda I to zero."""
+    item = "A P = P J"
+    for number, chain in enumerate(response.jordan.chains, start=1):
+        below: RootMatrix | None = None
+        for place, vector in enumerate(chain.vectors, start=1):
+            left = vector.shifted(response.matrix)
+            left = left if below is None else left - below
+            fault = _first_nonzero_over_roots(left)
+            if fault is not None:
+                return Check(item, "refuted", f"row {fault[0]} of vector {place} of chain {number}")
+            below = vector
+    if response.jordan.basis.rank() != response.matrix.shape[0]:
+        return Check(item, "refuted", "the chains do not span the space: P is singular")
+    return Check(
+        item,
+        "proved",
+        "A - λI was applied to every vector of every chain: the one below it, and zero at "
+        "the eigenvector; the chains span the space",
+    )
+
+
+def routes_check(response: Response) -> Check:
+    """P e^(Jt) P^(-1) and the resolvent give the same e^(At), compared on a basis.
+
+    The basis vectors A^k u of each chain have known coordinates along the chains, so
+    P e^(Jt) P^(-1) A^k u is known without P^(-1).
+    """
+    item = "P e^(Jt) P^(-1) = e^(At)"
+    column = 0
+    for chain in response.jordan.chains:
+        p = chain.factor.p
+        terms = [term for term in response.exponential.terms if term.factor.p == p]
+        if len(terms) != 1:
+            return Check(item, "refuted", "the two routes have different eigenvalues")
+        for power in range(chain.size * chain.factor.degree):
+            vector = response.jordan.basis[:, column].to_dense()
+            column += 1
+            along = [(c * p.diff()).rem(p) for c in chain.coordinates(power)]
+            for j, residue in enumerate(terms[0].residues):
+                difference = residue.before(vector)
+                for i in range(chain.size - j):
+                    difference = difference - chain.vectors[i].scaled(along[i + j])
+                fault = _first_nonzero_over_roots(difference)
+                if fault is not None:
+                    return Check(
+                        item,
+                        "refuted",
+                        f"row {fault[0]} of the image of basis vector {column}, the "
+                        f"coefficient of {_monomial(chain.factor.degree, j)}",
+                    )
+    return Check(
+        item,
+        "proved",
+        "two ways to e^(At), by eigenvectors and chains and by the resolvent, were compared "
+        "on a basis of the space: all coefficients agree",
+    )
+
+
+def determinant_check(response: Response) -> Check:
+    """The determinant is e^(tr(A) t), from Jacobi's formula and the traces of the projectors.
+
+    (det F)' = tr(F' F^(-1)) det F = tr(A) det F, once F' = A F is proved; and the trace of
+    each spectral projector counts the eigenvalue, so that their sum weighted is tr A.
+    Source:  F. R. Gantmacher, The Theory of Matrices, 1959, volume 2, chapter XIV.
+    """
+    item = "det e^(At) = e^(tr(A) t)"
+    field = response.field
+    total = field.domain.zero
+    for term in response.exponential.terms:
+        diagonal = [term.residues[0].entry(i, i) for i in range(response.matrix.shape[0])]
+        trace = reduce(lambda f, g: f + g, diagonal)
+        count = field.domain.convert(term.factor.multiplicity)
+        if (trace - term.factor.p.diff().mul_ground(count)).rem(term.factor.p):
+            return Check(item, "refuted", "a spectral projector has the wrong trace")
+        total -= count * term.factor.p.nth(term.factor.degree - 1)
+    if total != _trace(response.matrix):
+        return Check(item, "refuted", "the eigenvalues do not add up to tr A")
+    return Check(
+        item,
+        "proved",
+        "the traces of the spectral projectors are the multiplicities, and the eigenvalues "
+        "so counted add up to tr A; Jacobi's formula gives the determinant",
+    )
+
+
+def _monomial(degree: int, power: int) -> str:
+    root = "e^(λt)" if degree == 1 else f"e^(λt), λ any of {degree} roots"
+    return root if power == 0 else f"t^{power} {root}"
+
+
+def _trace(matrix: FieldMatrix) -> object:
+    return sum((matrix[i, i].element for i in range(matrix.shape[0])), start=matrix.domain.zero)
+
+
+def _first_nonzero(matrix: FieldMatrix) -> tuple[int, int] | None:
+    """The place (from 1) of the first entry that is not zero, or None."""
+    if matrix.is_zero_matrix:
+        return None
+    rows = matrix.to_list()
+    return next(
+        (i, k)
+        for i, row in enumerate(rows, start=1)
+        for k, element in enumerate(row, start=1)
+        if element
+    )
+
+
+def _first_nonzero_over_roots(matrix: RootMatrix) -> tuple[int, int] | None:
+    faults = [_first_nonzero(c) for c in matrix.coefficients]
+    return min((fault for fault in faults if fault is not None), default=None)

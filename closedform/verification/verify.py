@@ -1,0 +1,56 @@
+"""From a response to the record of what was proved about it."""
+
+from __future__ import annotations
+
+from closedform.response.response import Response
+from closedform.verification.enclosures import (
+    ball_check,
+    determinant_ball_check,
+    formula_check,
+    mpmath_check,
+    trial_times,
+)
+from closedform.verification.identities import (
+    chain_check,
+    characteristic_polynomial_check,
+    determinant_check,
+    differential_equation_check,
+    initial_value_check,
+    output_check,
+    routes_check,
+    state_check,
+)
+from closedform.verification.record import Check, VerificationRecord
+
+__all__ = ["prove", "verify"]
+
+
+def prove(response: Response) -> tuple[Check, ...]:
+    """Return the exact part of the record: every identity, by arithmetic in fields."""
+    a, n = response.matrix, response.matrix.shape[0]
+    return (
+        characteristic_polynomial_check(response),
+        differential_equation_check("d/dt e^(At) - A e^(At) = 0", response.exponential, a),
+        initial_value_check("e^(A0) = I", response.exponential, response.field.identity(n)),
+        differential_equation_check("x' - A x = 0", response.state, a),
+        initial_value_check("x(0) = x0", response.state, response.initial),
+        state_check(response),
+        output_check(response),
+        chain_check(response),
+        routes_check(response),
+        determinant_check(response),
+    )
+
+
+def verify(response: Response) -> VerificationRecord:
+    """Return the whole record: the exact identities, then the certified comparisons."""
+    times = trial_times(response)
+    return VerificationRecord(
+        (
+            *prove(response),
+            ball_check(response, times),
+            formula_check(response, times),
+            determinant_ball_check(response, times),
+            mpmath_check(response, times),
+        )
+    )
