@@ -6,11 +6,11 @@ from fractions import Fraction
 from typing import Any
 
 import pytest
-from flint import ctx
+from flint import arb, ctx, fmpq
 from hypothesis import given, settings
 
 import closedform
-from tests.exact import fractions_of
+from tests.exact import fractions_of, value_of
 from tests.known_systems import KnownSystem
 from tests.strategies import every_system, known_systems
 
@@ -57,11 +57,28 @@ def assert_transition_is_the_known_one(response: Any, system: KnownSystem) -> No
                 assert own_state.overlaps(expected)
 
 
+def assert_formulas_say_the_known_transition(response: Any, system: KnownSystem) -> None:
+    """What is written, read literally, is e^(At): no term lost between proof and formula."""
+    time = Fraction(4, 7)
+    known = system.transition(time)
+    with ctx.workprec(400):
+        constants = response.closed_forms.constants
+        names = {constant.name: constant.definition.enclosure() for constant in constants}
+        names[response.model.time] = arb(fmpq(time.numerator, time.denominator))
+        largest = max(abs(entry).upper() for row in known for entry in row)
+        for written, row in zip(response.transition, known, strict=True):
+            for formula, entry in zip(written, row, strict=True):
+                value = value_of(formula, names)
+                assert value.overlaps(entry)
+                assert value.rad() <= largest * 1e-80
+
+
 @pytest.mark.parametrize("system", SMALL)
 def test_every_structure_of_order_up_to_4_is_found_and_proved(system: KnownSystem) -> None:
     response = respond_to(system)
     assert_spectrum_is_the_known_one(response, system)
     assert_transition_is_the_known_one(response, system)
+    assert_formulas_say_the_known_transition(response, system)
     assert closedform.verify(response).holds
 
 
@@ -71,6 +88,7 @@ def test_random_structures_of_order_up_to_6_are_found_and_proved(system: KnownSy
     response = respond_to(system)
     assert_spectrum_is_the_known_one(response, system)
     assert_transition_is_the_known_one(response, system)
+    assert_formulas_say_the_known_transition(response, system)
     record = closedform.verify(response)
     assert record.holds
     assert {check.outcome for check in record.checks} <= {"proved", "enclosed", "not attempted"}

@@ -1,0 +1,39 @@
+"""Every starter model reads, responds and is proved."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import pytest
+
+import closedform
+
+STARTERS = sorted((Path(__file__).parents[1] / "templates" / "starters").glob("*.toml"))
+
+
+@pytest.mark.parametrize("path", STARTERS, ids=[path.stem for path in STARTERS])
+def test_a_starter_is_read_and_its_response_proved(path: Path) -> None:
+    model = closedform.load(path)
+    assert model.name == path.stem
+    assert model.title
+    assert model.summary
+    assert model.times
+    record = closedform.verify(closedform.respond(model))
+    assert record.holds
+
+
+KINDS = {
+    "three_equal_tanks": [(1, (3,))],
+    "matched_resonators": [(2, (2,))],
+    "coasting_shuttle": [(1, (3,))],
+    "three_compartment_dose": [(3, (1,))],
+    "critically_damped_mount": [(1, (2,))],
+    "rc_ladder_ten": [(1, (1,)), (3, (1,)), (6, (1,))],
+}
+
+
+@pytest.mark.parametrize("name", KINDS)
+def test_a_starter_shows_the_kind_of_spectrum_it_is_there_for(name: str) -> None:
+    path = next(path for path in STARTERS if path.stem == name)
+    factors = closedform.respond(closedform.load(path)).spectrum.factors
+    assert sorted((f.degree, tuple(f.blocks)) for f in factors) == KINDS[name]
