@@ -19,6 +19,7 @@ __all__ = [
     "NonlinearTermError",
     "NotANumberError",
     "NotFiniteError",
+    "PlacedError",
     "SizeError",
     "UndeclaredNameError",
     "quoted",
@@ -36,7 +37,7 @@ def shown(place: Place, paragraph: str) -> str:
         return head
     line = "".join(c if c.isprintable() else " " for c in place.excerpt)
     if place.column is None:
-        return f"{head}\n  {line[:WIDTH]}"
+        return f"{head}\n  {line[:WIDTH]}{'…' if len(line) > WIDTH else ''}"
     start = max(0, place.column - 1 - WIDTH // 2) if len(line) > WIDTH else 0
     before = "…" if start else ""
     after = "…" if start + WIDTH < len(line) else ""
@@ -50,8 +51,8 @@ def quoted(text: str, limit: int = 60) -> str:
     return f"'{text}'" if len(text) <= limit else f"'{text[: limit - 1]}…'"
 
 
-class FormulaError(InputError):
-    """A formula that cannot be used; `place` says where it stands."""
+class PlacedError(InputError):
+    """An error that shows where in its source something stands: `place`."""
 
     def __init__(self, place: Place, *facts: object) -> None:
         super().__init__(place, *facts)
@@ -63,6 +64,10 @@ class FormulaError(InputError):
     def _paragraph(self) -> str:
         """Return what is wrong and what to do about it, without the place."""
         raise NotImplementedError
+
+
+class FormulaError(PlacedError):
+    """A formula that cannot be used as it stands."""
 
 
 class FormulaSyntaxError(FormulaError):

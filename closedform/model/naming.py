@@ -1,0 +1,77 @@
+"""Which names a model may use."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+
+from closedform.model.entries import kind_of
+from closedform.model.errors import (
+    DuplicateNameError,
+    NoStatesError,
+    TooManyStatesError,
+    UnusableNameError,
+    WrongKindError,
+)
+from closedform.model.source import Source
+from closedform.notation.expression import FUNCTIONS
+from closedform.notation.greek import ascii_name
+
+__all__ = ["MOST_STATES", "check_name", "check_states"]
+
+MOST_STATES = 400
+LONGEST_NAME = 64
+USABLE = re.compile("[A-Za-z][A-Za-z0-9_]*")
+KEPT = ("e", "i", "pi")
+
+
+def check_name(
+    name: str, key: str, source: Source, *, time: str | None = None, states: Sequence[str] = ()
+) -> None:
+    """Raise UnusableNameError unless a name can be used in formulas.
+
+    `time` is the name of the time and `states` are those already taken.
+    """
+    reason = None
+    if not USABLE.fullmatch(name):
+        reason = (
+            "a name begins with one of the letters a-z or A-Z and goes on with letters, digits "
+            "and underscores"
+        )
+        if USABLE.fullmatch(ascii_name(name)):
+            reason += f"; write '{ascii_name(name)}'"
+    elif len(name) > LONGEST_NAME:
+        reason = f"it has {len(name)} characters, and names have at most {LONGEST_NAME}"
+    elif name in FUNCTIONS:
+        reason = "it is the name of a function"
+    elif name in KEPT:
+        reason = "in a formula it would be taken for a well-known number"
+    elif name == time:
+        reason = "it is the name of the time; choose another, or set 'time'"
+    elif name in states:
+        reason = "a state has that name"
+    if reason:
+        place = source.at_name(key) if key.startswith("outputs.") else source.at(key)
+        raise UnusableNameError(place, name, reason)
+
+
+def check_states(given: Sequence[object], source: Source) -> tuple[str, ...]:
+    """Return the names of the states, each usable and different from the others.
+
+    Raises:  NoStatesError, TooManyStatesError, WrongKindError, UnusableNameError,
+             DuplicateNameError.
+    """
+    if not given:
+        raise NoStatesError(source.at("states"))
+    if len(given) > MOST_STATES:
+        raise TooManyStatesError(source.at("states"), len(given), MOST_STATES)
+    states: list[str] = []
+    for k, name in enumerate(given, start=1):
+        if not isinstance(name, str):
+            place = source.at(f"states[{k}]")
+            raise WrongKindError(place, "a name in quotation marks", kind_of(name))
+        check_name(name, f"states[{k}]", source)
+        if name in states:
+            raise DuplicateNameError(source.at(f"states[{k}]"), name)
+        states.append(name)
+    return tuple(states)
