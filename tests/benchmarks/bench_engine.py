@@ -5,7 +5,7 @@
 Every timing is taken in a process of its own after a first small call, so neither side
 pays for its imports, a hanging call is ended at the cut-off, and peak memory is that of
 one side.  The exit status is 1 if an answer of ours is refuted or not given because of an
-error; no time decides it.
+error, or if a whole command fails; no time decides it.
 """
 
 from __future__ import annotations
@@ -56,7 +56,8 @@ def main() -> int:
     wrong = [r["name"] for r in results if not r["ours"].get("holds", "cut off" in r["ours"])]
     if wrong:
         print(f"not proved: {', '.join(wrong)}", file=sys.stderr)
-    return int(bool(wrong))
+    broken = [name for name, seconds in processes.items() if isinstance(seconds, str)]
+    return int(bool(wrong or broken))
 
 
 def arguments() -> argparse.Namespace:
