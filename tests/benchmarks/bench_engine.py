@@ -81,9 +81,9 @@ def ours(rows: Rows) -> Result:
     it; beyond the order up to which e^(At) is written out there are none.  The certified
     comparisons of the whole record are made too, outside the timing.
     """
-    import closedform  # noqa: PLC0415 - a worker loads its own side only
-    from closedform.notation.expression import operations  # noqa: PLC0415
-    from closedform.verification.verify import prove  # noqa: PLC0415
+    import closedform
+    from closedform.notation.expression import operations
+    from closedform.verification.verify import prove
 
     def answer(matrix: Rows) -> tuple[Any, Any]:
         model = closedform.model(
@@ -110,7 +110,7 @@ def ours(rows: Rows) -> Result:
 
 def sympys(rows: Rows) -> Result:
     """Time SymPy's exponential of A t, or say what it raised."""
-    import sympy  # noqa: PLC0415 - a worker loads its own side only
+    import sympy
 
     t = sympy.Symbol("t", real=True)
 
@@ -212,8 +212,8 @@ def shortest(command: list[str], repeats: int) -> float | str:
 
 def show(results: list[Result], processes: dict[str, float | str], cutoff: float) -> None:
     """Print the table, the median ratio and the whole-process times."""
-    from rich.console import Console  # noqa: PLC0415 - the workers do without it
-    from rich.table import Table  # noqa: PLC0415
+    from rich.console import Console
+    from rich.table import Table
 
     table = Table(title=f"e^(At) with its proof beside SymPy (cut-off {cutoff:g} s)")
     table.add_column("matrix")
