@@ -1,0 +1,66 @@
+"""Sums of square roots are a field, computed exactly."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+from math import prod
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from closedform.algebra.surds import LARGEST_RADICAND, SurdSum, square_part
+
+SURDS = st.dictionaries(
+    st.sampled_from([1, 2, 3, 5, 6, 10, 15, 77]), st.fractions(max_denominator=9), max_size=4
+).map(SurdSum.of)
+
+
+@given(st.dictionaries(st.sampled_from([2, 3, 5, 7, 999983]), st.integers(0, 3), max_size=3))
+def test_the_square_part_is_split_off(exponents: dict[int, int]) -> None:
+    n = prod(p**k for p, k in exponents.items())
+    if n > LARGEST_RADICAND:
+        return
+    expected = prod(p for p, k in exponents.items() if k % 2)
+    root, free = square_part(n)
+    assert root * root * free == n
+    assert free == expected
+
+
+def test_a_large_number_is_refused_unless_it_is_a_square() -> None:
+    assert square_part(10**40) == (10**20, 1)
+    with pytest.raises(ValueError, match="up to 1e"):
+        square_part(LARGEST_RADICAND + 1)
+
+
+def test_a_fraction_needs_its_two_parts_factored_only() -> None:
+    root = SurdSum.rational(Fraction(10**17 + 3, 10**17 + 19)).sqrt()
+    assert root * root == SurdSum.rational(Fraction(10**17 + 3, 10**17 + 19))
+
+
+@given(SURDS)
+def test_every_number_but_zero_has_an_inverse(x: SurdSum) -> None:
+    if x.is_zero:
+        with pytest.raises(ZeroDivisionError):
+            x.inverse()
+    else:
+        assert x * x.inverse() == SurdSum.rational(1)
+
+
+@given(SURDS, SURDS, SURDS)
+def test_multiplication_distributes(x: SurdSum, y: SurdSum, z: SurdSum) -> None:
+    assert x * (y + z) == x * y + x * z
+    assert (x * y) * z == x * (y * z)
+
+
+def test_an_inverse_needs_no_factors_of_its_radicands() -> None:
+    p, q = 10**18 - 11, 10**18 - 33  # the two largest primes below 10^18
+    x = SurdSum.of({1: Fraction(1), p: Fraction(2), q: Fraction(3), p * q: Fraction(1, 7)})
+    assert x * x.inverse() == SurdSum.rational(1)
+
+
+def test_only_rational_numbers_that_are_not_negative_have_a_root_here() -> None:
+    with pytest.raises(ValueError, match="negative"):
+        SurdSum.rational(-1).sqrt()
+    with pytest.raises(ValueError, match="not rational"):
+        SurdSum.of({2: Fraction(1)}).sqrt()
