@@ -15,10 +15,10 @@ __all__ = ["BINARY", "EM_PER_LINE", "RELATION", "Box", "Style", "bracketed", "jo
 EM_PER_LINE = 38.0
 """Width at a formula's disposal: 16 cm of 11 pt text are 41.5 em, less the equation number."""
 
-BINARY = 1.25
+BINARY = 1.23
 """A plus or minus sign with its spaces."""
 
-RELATION = 1.4
+RELATION = 1.36
 """An equals sign with its spaces."""
 
 

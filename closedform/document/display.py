@@ -8,6 +8,7 @@ line, zero entries left out (`Display.zeros` says so, and the template words it)
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from closedform.derivation.step import Matrix, Side, Statement, Symbol
@@ -17,7 +18,7 @@ from closedform.document.matrices import ZERO, matrix_box, matrix_height, with_f
 from closedform.document.symbols import side_box
 from closedform.notation.expression import Expression, Product
 
-__all__ = ["Display", "displayed", "fits"]
+__all__ = ["Display", "displayed", "displayed_together", "fits"]
 
 WIDEST_LEFT_SIDE = 12.0
 """A left side up to this width, in em, keeps the lines below it indented past it."""
@@ -25,6 +26,12 @@ WIDEST_LEFT_SIDE = 12.0
 TALLEST_COLUMN = 40.0
 AS_GIVEN = frozenset({"matrix", "initial"})
 """Statements of what the user gave: their matrices keep their entries as they are."""
+
+MARK = "\t"
+"""Stands for the alignment mark until the rows are put together: a matrix has & inside."""
+
+APART = "\v"
+"""Ends a row after which something new begins, with a little more space."""
 
 RELATIONS = {"=": "=", "~": r"\sim", "!=": r"\neq", "<": "<", ">": ">", "in": r"\in"}
 
@@ -46,39 +53,69 @@ def displayed(statement: Statement, *, label: str = "", by: str = "auto") -> Dis
     """Return the statement as a display, numbered if it has a label.
 
     `by` is auto, or entries to have a matrix set entry by entry though it would fit.
-    Raises ValueError for a relation that is not in `RELATIONS`.
+    Raises ValueError for a relation that is not in `RELATIONS`, and for a matrix too wide
+    for the line that no other side gives a name to.
     """
+    layout = _laid_out(statement, by)
+    number_last = layout.form == "whole"
+    latex = _environment(layout.rows, label, number_last=number_last)
+    return Display(latex, layout.form, layout.zeros)
+
+
+def displayed_together(statements: Sequence[Statement], labels: Sequence[str]) -> list[Display]:
+    """Return the statements in one display, aligned; each numbered if it has a label.
+
+    If a matrix of one of them has to be taken apart, each is a display of its own.
+    """
+    layouts = [_laid_out(statement, "auto") for statement in statements]
+    if len(layouts) < 2 or any(layout.form != "whole" for layout in layouts):
+        pairs = zip(statements, labels, strict=True)
+        return [displayed(statement, label=label) for statement, label in pairs]
+    rows: list[str] = []
+    tags: list[str] = []
+    for layout, label in zip(layouts, labels, strict=True):
+        relation = layout.relation
+        lines = layout.rows
+        if len(lines) == 1 and MARK not in lines[0]:
+            lines = [lines[0].replace(f" {relation} ", f" {MARK}{relation} ", 1)]
+        rows += [*lines[:-1], lines[-1] + APART] if len(lines) > 1 else lines
+        tags += ["" for _ in lines[1:]]
+        tags.append(label)
+    return [Display(_aligned(rows, tags))]
+
+
+@dataclass(frozen=True, slots=True)
+class _Layout:
+    rows: list[str]
+    relation: str
+    form: str = "whole"
+    zeros: bool = False
+
+
+def _laid_out(statement: Statement, by: str) -> _Layout:
     relation = RELATIONS.get(statement.relation)
     if relation is None:
         raise ValueError(f"no relation is written {statement.relation!r}")
     sides = statement.sides
     if statement.says not in AS_GIVEN:
         sides = tuple(with_front(s) if isinstance(s, Matrix) else s for s in sides)
-    boxes = [side_box(side) for side in sides]
-    left = boxes[0].width if boxes[0].width <= WIDEST_LEFT_SIDE else 1.0
-    room = EM_PER_LINE - left - RELATION
-    wide = next(
-        (
-            i
-            for i, side in enumerate(sides)
-            if isinstance(side, Matrix)
-            and (by == "entries" or matrix_box(side, tight=True).width > room)
-        ),
-        None,
-    )
-    if wide is None:
-        rows = _chain(sides, relation, room)
-        return Display(_environment(rows, label))
-    matrix, others = sides[wide], sides[:wide] + sides[wide + 1 :]
-    if not isinstance(matrix, Matrix) or not others:
-        raise ValueError("a matrix too wide for the line needs a name on its left")
-    rows = _chain(others, relation, room) if len(others) > 1 else []
-    name = others[0]
-    if by == "auto" and _stands_by_columns(matrix):
-        rows += _columns(name, matrix, relation)
-        return Display(_environment(rows, label), "columns")
-    more, zeros = _entries(name, matrix, relation)
-    return Display(_environment(rows + more, label), "entries", zeros)
+    left = side_box(sides[0]).width
+    room = EM_PER_LINE - (left if left <= WIDEST_LEFT_SIDE else 1.0) - RELATION
+    for i, matrix in enumerate(sides):
+        if not isinstance(matrix, Matrix):
+            continue
+        if by == "auto" and matrix_box(matrix, tight=True).width <= room:
+            continue
+        others = sides[:i] + sides[i + 1 :]
+        if not others or isinstance(others[0], Matrix):
+            raise ValueError("a matrix that is taken apart needs a name on another side")
+        rows = _chain(others, relation, room) if len(others) > 1 else []
+        if by == "auto" and _stands_by_columns(others[0], matrix):
+            rows += _columns(others[0], matrix, relation)
+            return _Layout(rows, relation, "columns")
+        more, zeros = _entries(others[0], matrix, relation)
+        return _Layout(rows + more, relation, "entries", zeros)
+    return _Layout(_chain(sides, relation, room), relation)
 
 
 def fits(statement: Statement) -> bool:
@@ -86,15 +123,26 @@ def fits(statement: Statement) -> bool:
     return displayed(statement).form == "whole"
 
 
-def _environment(rows: list[str], label: str) -> str:
-    tag = rf"\label{{{label}}}" if label else ""
-    star = "" if label else "*"
-    if len(rows) == 1:
-        body = rows[0].replace("&", "", 1) if rows[0].startswith("&") else rows[0]
-        return f"\\begin{{equation{star}}}{tag}\n  {body}\n\\end{{equation{star}}}"
-    rest = r" \notag" if label else ""
-    lines = [f"  {rows[0]}{tag}", *(f"  {row}{rest}" for row in rows[1:])]
-    return f"\\begin{{align{star}}}\n" + " \\\\\n".join(lines) + f"\n\\end{{align{star}}}"
+def _environment(rows: list[str], label: str, *, number_last: bool) -> str:
+    """Return the rows as equation or align, with the number in the first row or the last."""
+    if len(rows) == 1 and MARK not in rows[0]:
+        tag = rf"\label{{{label}}}" if label else ""
+        star = "" if label else "*"
+        return f"\\begin{{equation{star}}}{tag}\n  {rows[0]}\n\\end{{equation{star}}}"
+    blank = [""] * (len(rows) - 1)
+    return _aligned(rows, [*blank, label] if number_last else [label, *blank])
+
+
+def _aligned(rows: list[str], labels: list[str]) -> str:
+    """Return the rows in align; `MARK` is where they are aligned."""
+    star = "" if any(labels) else "*"
+    lines: list[str] = []
+    for row, label in zip(rows, labels, strict=True):
+        marked = row.replace(MARK, "&") if MARK in row else f"& {row}"
+        tag = rf"\label{{{label}}}" if label else r" \notag"
+        end = "" if len(lines) == len(rows) - 1 else r" \\[4pt]" if APART in row else r" \\"
+        lines.append(f"  {marked.replace(APART, '')}{'' if star else tag}{end}")
+    return f"\\begin{{align{star}}}\n" + "\n".join(lines) + f"\n\\end{{align{star}}}"
 
 
 def _matrix_aware(side: Side, room: float) -> list[Box]:
@@ -111,13 +159,13 @@ def _chain(sides: tuple[Side, ...], relation: str, room: float) -> list[str]:
         return [f" {relation} ".join(box.latex for box in boxes)]
     if boxes[0].width <= WIDEST_LEFT_SIDE:
         rows = [boxes[0].latex + " "]
-        begin, indent = f"&{relation} ", r"&\qquad "
+        begin, indent = f"{MARK}{relation} ", rf"{MARK}\qquad "
         used, beyond = 0.0, boxes[0].width + 2.0
         opening = True
     else:
         lines = filled(pieces(sides[0], EM_PER_LINE), EM_PER_LINE, EM_PER_LINE - 2)
-        rows = [f"& {lines[0]}", *(rf"&\qquad {line}" for line in lines[1:])]
-        begin, indent = rf"&\quad {relation} ", r"&\qquad\quad "
+        rows = [f"{MARK} {lines[0]}", *(rf"{MARK}\qquad {line}" for line in lines[1:])]
+        begin, indent = rf"{MARK}\quad {relation} ", rf"{MARK}\qquad\quad "
         used, beyond = room, 3.0
         opening = False
     for side in sides[1:]:
@@ -142,13 +190,13 @@ def _entry(name: Side, *indices: str) -> Symbol:
     return Symbol("entry", indices, parts=(name,))
 
 
-def _stands_by_columns(matrix: Matrix) -> bool:
+def _stands_by_columns(name: Side, matrix: Matrix) -> bool:
     if len(matrix.rows[0]) == 1 or matrix_height(matrix) > TALLEST_COLUMN:
         return False
     entries = [entry for row in matrix.rows for entry in row]
     if 2 * entries.count(ZERO) > len(entries):
         return False
-    return all(box.width <= EM_PER_LINE for _, box in _column_boxes(_entry(ZERO), matrix))
+    return all(box.width <= EM_PER_LINE for _, box in _column_boxes(_entry(name), matrix))
 
 
 def _column_boxes(name: Symbol, matrix: Matrix) -> list[tuple[str, Box]]:
@@ -168,7 +216,7 @@ def _columns(name: Side, matrix: Matrix, relation: str) -> list[str]:
         column = side_box(_entry(name, r"\cdot", index))
         text = f"{column.latex} {relation} {box.latex}"
         if used + 3.0 + box.width > EM_PER_LINE:
-            rows.append(f"& {text}")
+            rows.append(f"{MARK} {text}")
             used = box.width
         else:
             rows[-1] += rf",\qquad {text}"
@@ -190,9 +238,7 @@ def _entries(name: Side, matrix: Matrix, relation: str) -> tuple[list[str], bool
         value = entry if matrix.front is None else Product((matrix.front, entry))
         room = EM_PER_LINE - side_box(names[0]).width - RELATION
         chain = _chain((*names, value), relation, room)
-        rows += (
-            [chain[0].replace(f" {relation} ", f" &{relation} ", 1), *chain[1:]]
-            if (len(chain) == 1)
-            else chain
-        )
+        if len(chain) == 1:
+            chain = [chain[0].replace(f" {relation} ", f" {MARK}{relation} ", 1)]
+        rows += [*chain[:-1], chain[-1] + APART]
     return rows, zeros

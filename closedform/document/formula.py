@@ -25,10 +25,9 @@ from closedform.notation.expression import (
 
 __all__ = ["factors_of", "formula", "front_glue", "signed", "terms_of"]
 
-LONGEST_SMALL_FRACTION = 3
-"""Digits up to which a fraction inside a displayed formula is set small."""
-
 DIGIT = 0.515
+HEAD = {"sin": 1.1, "cos": 1.2, "sinh": 1.65, "cosh": 1.78}
+"""Widths of function names; the thin space before them is counted with the factors."""
 
 
 def formula(expression: Expression, style: Style = Style.DISPLAY) -> Box:
@@ -133,7 +132,7 @@ def _number(value: Fraction, style: Style, *, small: bool) -> Box:
     if style >= Style.SCRIPT:
         return plain(f"{above}/{below}", DIGIT * (len(above) + len(below) + 1), style)
     longest = max(len(above), len(below))
-    if style is Style.DISPLAY and small and longest <= LONGEST_SMALL_FRACTION:
+    if style is Style.DISPLAY and small:
         return Box(rf"\tfrac{{{above}}}{{{below}}}", DIGIT * longest * 0.75 + 0.3, 1)
     wide = DIGIT * longest * style.inner.scale + 0.3
     return Box(rf"\frac{{{above}}}{{{below}}}", wide, 2 if style is Style.DISPLAY else 1)
@@ -165,7 +164,7 @@ def _power(base: Expression, exponent: Expression, style: Style) -> Box:
             value.denominator == 1 and value > 1
         ):
             inside = bracketed(_sum_level(argument, style), style)
-            head = plain(rf"\{function}^{{{raised.latex}}}", 0.55 * len(function), style)
+            head = plain(rf"\{function}^{{{raised.latex}}}", HEAD[function], style)
             return joined(Box(head.latex, head.width + raised.width), inside)
         case ((Name() | Call("sqrt", _)), _):
             bottom = _factor(base, style)
@@ -182,14 +181,16 @@ def _call(function: str, argument: Expression, style: Style, *, bare: bool) -> B
     if function == "exp":
         raised = _sum_level(argument, style.script)
         return Box(
-            rf"\mathrm{{e}}^{{{raised.latex}}}", raised.width + 0.55 * style.scale, raised.height
+            rf"\mathrm{{e}}^{{{raised.latex}}}", raised.width + 0.52 * style.scale, raised.height
         )
     inside = _sum_level(argument, style)
     if function == "sqrt":
         return Box(
-            rf"\sqrt{{{inside.latex}}}", inside.width + 1.05 * style.scale, min(inside.height, 2)
+            rf"\sqrt{{{inside.latex}}}",
+            inside.width + (1.08 if inside.height else 0.92) * style.scale,
+            min(inside.height, 2),
         )
-    head = plain(rf"\{function}", 0.55 * len(function) + 0.2, style)
+    head = plain(rf"\{function}", HEAD[function] + (0.2 if bare else 0.0), style)
     if bare:
         return joined(head, inside, glue=" ")
     return joined(head, bracketed(inside, style))
@@ -246,8 +247,9 @@ def front_glue(before: Expression, after: Expression, left: Box, right: Box) -> 
             return (" " if close or before.text == IMAGINARY else ""), 0.0
         if right.latex.startswith("(") or is_long(before.text) or isinstance(after, Name):
             return r"\,", 0.17
+    space = 0.2 if isinstance(before, Call) or isinstance(after, Call) else 0.0
     # a letter after a command name would become part of it: \omega x
-    return (" " if left.latex[-1].isalpha() and right.latex[0].isalpha() else ""), 0.2
+    return (" " if left.latex[-1].isalpha() and right.latex[0].isalpha() else ""), space
 
 
 def _is_root(expression: Expression) -> bool:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 
-from closedform.derivation.step import Matrix, Side, Statement
+from closedform.derivation.step import Side, Statement
 from closedform.document.display import Display, displayed, fits
 from closedform.document.escape import escaped
 from closedform.document.names import name_box
@@ -19,10 +19,16 @@ __all__ = [
     "expression_latex",
     "fits",
     "inline",
+    "mixed",
     "name_latex",
     "side_latex",
+    "split_decimal",
 ]
 
+NUMBER = r"[0-9]+(?:\.[0-9]+)?(?:[eE][-+]?[0-9]+)?"
+COMPLEX = re.compile(
+    rf"(?P<real>([-+\u2212]?{NUMBER})?)\s*(?P<sign>[-+\u2212±]?)\s*(?P<size>{NUMBER})\s*i"
+)
 DECIMAL = re.compile(
     r"(?P<sign>[-+\u2212]?)(?P<whole>[0-9]+)(?P<part>(\.[0-9]+)?)([eE](?P<power>[-+]?[0-9]+))?"
 )
@@ -56,19 +62,37 @@ def inline(item: Side | Statement | str) -> str:
     return f"${side_latex(item)}$"
 
 
-def cell(item: Side | Statement | str) -> str:
-    """Return what stands in a cell of a table: text is escaped, the rest is mathematics."""
-    return escaped(item) if isinstance(item, str) else inline(item)
+def cell(item: Side | Statement | str, *, display: bool = False) -> str:
+    """Return what stands in a cell of a table: text is escaped, the rest is mathematics.
+
+    In a cell of its own a formula may have the size of a displayed one.
+    """
+    if isinstance(item, str):
+        return escaped(item)
+    return inline(item).replace("$", r"$\displaystyle ", 1) if display else inline(item)
+
+
+def mixed(items: str | list[Side | Statement | str]) -> str:
+    """Return a sentence: a text, or a list of texts and mathematics with spaces between."""
+    return " ".join(map(cell, [items] if isinstance(items, str) else items))
 
 
 def decimal(text: str) -> str:
-    r"""Return a decimal as mathematics; a text that is none is escaped.
+    r"""Return a decimal as mathematics, a complex one too; a text that is none is escaped.
 
     >>> decimal("-1.25e-7")
     '$-1.25 \\times 10^{-7}$'
     """
+    if match := COMPLEX.fullmatch(text.strip()):
+        real, size = (_signed(match[part]) if match[part] else "" for part in ("real", "size"))
+        sign = {"+": "+", "-": "-", "\u2212": "-", "±": r"\pm"}.get(match["sign"], "")
+        return f"${real} {sign} {size}\\mathrm{{i}}$".replace("$ ", "$")
     sign, whole, part = split_decimal(text)
     return escaped(text) if not whole else f"${sign}{whole}{part}$"
+
+
+def _signed(text: str) -> str:
+    return "".join(split_decimal(text))
 
 
 def split_decimal(text: str) -> tuple[str, str, str]:
@@ -82,8 +106,3 @@ def split_decimal(text: str) -> tuple[str, str, str]:
     power = rf" \times 10^{{{int(match['power'])}}}" if match["power"] else ""
     sign = "-" if match["sign"] in {"-", "\u2212"} else ""
     return sign, match["whole"], match["part"] + power
-
-
-def is_matrix(side: Side) -> bool:
-    """Say whether a side is a matrix of formulas."""
-    return isinstance(side, Matrix)

@@ -40,7 +40,8 @@ def matrix_box(matrix: Matrix, *, tight: bool = False) -> Box:
     """Return the matrix in square brackets; `tight` puts its columns nearer together."""
     cells = [[formula(entry, Style.TEXT) for entry in row] for row in matrix.rows]
     tall = any(cell.height for row in cells for cell in row)
-    inside = (r" \\[3pt] " if tall else r" \\ ").join(
+    taller = any(cell.height > 1 or r"\left" in cell.latex for row in cells for cell in row)
+    inside = (r" \\[7pt] " if taller else r" \\[3pt] " if tall else r" \\ ").join(
         " & ".join(cell.latex for cell in row) for row in cells
     )
     widths = [max(cell.width for cell in column) for column in zip(*cells, strict=True)]
@@ -55,7 +56,7 @@ def matrix_box(matrix: Matrix, *, tight: bool = False) -> Box:
 def matrix_height(matrix: Matrix) -> float:
     """Return how much of a page's height the matrix takes, in em."""
     tall = (any(formula(entry, Style.TEXT).height for entry in row) for row in matrix.rows)
-    return sum(2.2 if row else 1.6 for row in tall)
+    return sum(2.5 if row else 1.6 for row in tall)
 
 
 def with_front(matrix: Matrix) -> Matrix:

@@ -25,19 +25,29 @@ GREEK |= {"lamda": r"\lambda", "omicron": "o"}
 """Greek letters by name; `lamda` is the spelling Python users need for `lambda`."""
 
 IMAGINARY = "@i"
-WIDE = frozenset("mwMWABCDEFGHKNOQRTUVXYZ")
+UP_TO = (
+    (0.42, "i l t iota epsilon"),
+    (0.52, "c e g j o r s z I theta delta xi varsigma varepsilon zeta"),
+    (0.6, "a b d f h k n p q u v x y eta gamma kappa lambda mu nu phi rho varrho tau upsilon"),
+    (0.68, "J L S vartheta alpha beta chi pi sigma varphi omega Gamma Xi"),
+    (0.76, "T w psi Lambda Sigma Phi Omega Pi"),
+    (0.82, "A B C E F G O P Q R U V Y Z Theta Upsilon Psi"),
+    (0.92, "D H K m N X Delta varpi"),
+)
+WIDTHS = {letter: width for width, letters in UP_TO for letter in letters.split()}
+"""Letters by width, the wider of their italic and their upright form."""
+
+WIDEST = 1.08
 NAME = re.compile(
     r"(?P<base>[A-Za-z]+)(?P<digits>([0-9][A-Za-z0-9]*)?)(?P<rest>(_[A-Za-z0-9]+)*)(?P<primes>'*)"
 )
 
 
-def _letter_width(letter: str) -> float:
-    return 1.0 if letter in "mMW" else 0.86 if letter in WIDE else 0.62
-
-
 def _width(word: str) -> float:
     """Return the width of a word at text size."""
-    return 0.75 if word in GREEK else sum(map(_letter_width, word))
+    if word in GREEK:
+        return WIDTHS.get(word, WIDEST)
+    return sum(WIDTHS.get(letter, WIDEST) for letter in word)
 
 
 def _index(word: str) -> str:
@@ -51,7 +61,7 @@ def subscripted(base: Box, indices: tuple[str, ...], style: Style) -> Box:
     if not indices:
         return base
     words = [word for index in indices for word in index.split("_") if word]
-    width = sum(0.55 * len(w) if w.isdigit() else _width(w) for w in words) + 0.3 * (len(words) - 1)
+    width = sum(0.52 * len(w) if w.isdigit() else _width(w) for w in words) + 0.3 * (len(words) - 1)
     latex = f"{base.latex}_{{{','.join(map(_index, words))}}}"
     return Box(latex, base.width + (width + 0.08) * style.script.scale, base.height)
 
@@ -62,7 +72,7 @@ def letter_box(text: str, style: Style = Style.DISPLAY, *, bold: bool = False) -
     inner = GREEK.get(text) or (text if word and len(text) == 1 else "")
     if not inner:
         inner = rf"\mathrm{{{text}}}" if word else rf"\text{{{escaped(text)}}}"
-    width = _width(text) + (0.1 if bold else 0.0)
+    width = _width(text) * (1.17 if bold else 1.0)
     return plain(rf"\boldsymbol{{{inner}}}" if bold else inner, width, style)
 
 

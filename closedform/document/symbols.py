@@ -137,7 +137,9 @@ def _exponential(letter: str) -> Callable[[Symbol], Box]:
         if isinstance(argument, Sum | Negation | Number):
             raised = bracketed(raised, Style.SCRIPT)
         base = _bold(symbol, letter, Style.SCRIPT)
-        return Box(rf"\mathrm{{e}}^{{{base.latex}{raised.latex}}}", 0.6 + base.width + raised.width)
+        return Box(
+            rf"\mathrm{{e}}^{{{base.latex}{raised.latex}}}", 0.48 + base.width + raised.width
+        )
 
     return setter
 

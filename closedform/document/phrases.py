@@ -1,0 +1,111 @@
+"""What the templates say things with: filters, and formulas to put into a sentence."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Callable, Iterable
+from typing import Any
+
+from closedform.derivation.step import Side, Statement, Step, Symbol
+from closedform.document.escape import escaped
+from closedform.document.latex import cell, decimal, inline, mixed
+from closedform.document.tables import decimal_tables
+from closedform.notation.expression import Call, Expression, Name, Power, Product, number
+
+__all__ = ["FILTERS", "FUNCTIONS"]
+
+NUMBER_WORDS = "no one two three four five six seven eight nine ten eleven twelve"
+WORDS = NUMBER_WORDS.split()
+FIELD = re.compile(r"Q(\(sqrt\([0-9]+\)(, ?sqrt\([0-9]+\))*\))?")
+
+
+def said(step: Step, *says: str) -> list[Statement]:
+    """Return the step's statements that say one of these, in order."""
+    return [statement for statement in step.statements if statement.says in says]
+
+
+def symbol(
+    kind: str, letter: str = "", *indices: str, argument: Expression | None = None
+) -> Symbol:
+    """Return a symbol of a kind for use in a sentence."""
+    return Symbol(kind, indices, argument, letter)
+
+
+def named(item: str | Expression) -> Expression:
+    """Return a name for its text; a formula is left as it is."""
+    return Name(item) if isinstance(item, str) else item
+
+
+def times(*factors: str | Expression) -> Expression:
+    """Return a product of names and formulas."""
+    return Product(tuple(map(named, factors)))
+
+
+def exponential(*factors: str | Expression) -> Expression:
+    """Return e to the product of names and formulas."""
+    return Call("exp", times(*factors))
+
+
+def power(base: str | Expression, exponent: str | Expression) -> Expression:
+    """Return a power of names or formulas."""
+    return Power(named(base), named(exponent))
+
+
+def pair(real: str, frequency: str) -> Symbol:
+    """Return the symbol real part +- i frequency, from a whole number or names."""
+    middle = number(int(real)) if real.isdigit() else Name(real)
+    return Symbol("pair", parts=(middle, Name(frequency)))
+
+
+def dot_index() -> str:
+    """Return the index of a column as it is printed."""
+    return r"$\cdot\,j$"
+
+
+def relate(*sides: Side) -> str:
+    """Return sides joined by equals signs within a line of text."""
+    return inline(Statement("", sides))
+
+
+def counted(count: int, singular: str, plural: str) -> str:
+    """Return a number, in words up to twelve, with its noun."""
+    return f"{WORDS[count] if count < len(WORDS) else count} {singular if count == 1 else plural}"
+
+
+def listed(items: Iterable[str]) -> str:
+    """Return words as a list with commas and a last 'and'."""
+    words = list(items)
+    return words[0] if len(words) == 1 else f"{', '.join(words[:-1])} and {words[-1]}"
+
+
+def field(text: str) -> str:
+    r"""Return a field of numbers as mathematics: Q(sqrt(2)) is \mathbb{Q}(\sqrt{2})."""
+    if FIELD.fullmatch(text) is None:
+        return escaped(text)
+    roots = re.sub(r"sqrt\(([0-9]+)\)", r"\\sqrt{\1}", text[1:])
+    return rf"$\mathbb{{Q}}{roots}$"
+
+
+FILTERS: dict[str, Callable[..., Any]] = {
+    "text": escaped,
+    "math": inline,
+    "cell": cell,
+    "mixed": mixed,
+    "decimal": decimal,
+    "said": said,
+    "field": field,
+    "listed": listed,
+}
+
+FUNCTIONS: dict[str, Callable[..., Any]] = {
+    "counted": counted,
+    "decimal_tables": decimal_tables,
+    "symbol": symbol,
+    "relate": relate,
+    "name": Name,
+    "times": times,
+    "exponential": exponential,
+    "power": power,
+    "pair": pair,
+    "dot_index": dot_index,
+}

@@ -1,0 +1,201 @@
+"""A derivation through the templates to the text of a document."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from importlib import resources
+from importlib.resources.abc import Traversable
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from closedform.derivation.step import Derivation, Symbol
+from closedform.document.latex import fits
+from closedform.document.phrases import FILTERS, FUNCTIONS
+from closedform.document.references import References
+from closedform.errors import InputError
+from closedform.notation.expression import Name
+
+if TYPE_CHECKING:
+    from jinja2 import BaseLoader, Environment
+
+__all__ = ["DEPTHS", "TemplateError", "UnknownDepthError", "render", "templates_folder"]
+
+SUMMARY = frozenset(
+    {
+        "model",
+        "eigenvalues",
+        "named_roots",
+        "abbreviations",
+        "solution",
+        "outputs",
+        "values",
+        "verification",
+        "cautions",
+    }
+)
+ALL = SUMMARY | {
+    "characteristic_polynomial",
+    "eigenvectors",
+    "jordan_form",
+    "real_form",
+    "exponential_of_form",
+    "resolvent",
+    "transition",
+}
+DEPTHS: Mapping[str, frozenset[str]] = {"summary": SUMMARY, "working": ALL, "full": ALL}
+"""The kinds of step printed at each depth.  In full, every part also names what it rests on."""
+
+MAIN = "writeup.tex.j2"
+LONGEST_FOOT = 60
+
+
+class UnknownDepthError(InputError):
+    """A depth that is not in `DEPTHS`."""
+
+    def __init__(self, depth: str) -> None:
+        super().__init__(depth)
+        self.depth = depth
+
+    def __str__(self) -> str:
+        return f"No depth is called {self.depth!r}; choose one of {', '.join(DEPTHS)}."
+
+
+class TemplateError(InputError):
+    """A template is missing, cannot be read, or asks for something that is not there."""
+
+    def __init__(self, template: str, line: int | None, reason: str) -> None:
+        super().__init__(template, line, reason)
+        self.template, self.line, self.reason = template, line, reason
+
+    def __str__(self) -> str:
+        place = self.template if self.line is None else f"{self.template}, line {self.line}"
+        return (
+            f"{place}: {self.reason} Correct the template, or name the one that is shipped: latex."
+        )
+
+
+def templates_folder() -> Traversable:
+    """Return the folder of templates: inside the installed package, else of the checkout."""
+    package = resources.files("closedform")
+    inside = package / "templates"
+    return inside if inside.is_dir() else Path(str(package)).parent / "templates"
+
+
+def render(
+    derivation: Derivation, *, template: str | Path = "latex", depth: str = "working"
+) -> str:
+    """Return the derivation as the text of a document.
+
+    `template` is the name of a shipped template, or a folder whose files take the place
+    of the shipped ones of the same name.  The same input gives the same text.
+
+    Raises:  UnknownDepthError; TemplateError if the template is not there or fails.
+    """
+    if depth not in DEPTHS:
+        raise UnknownDepthError(depth)
+    import jinja2
+
+    references = References()
+    environment = _environment(_loader(str(template)), references)
+    steps = [step for step in derivation.steps if step.kind in DEPTHS[depth]]
+    unknown = next((step.kind for step in derivation.steps if step.kind not in ALL), None)
+    if unknown is not None:
+        raise ValueError(f"no kind of step is called {unknown!r}")
+    kinds = {step.kind for step in derivation.steps}
+    values = {
+        "title": derivation.title,
+        "steps": steps,
+        "depth": depth,
+        "time": _time(derivation),
+        "form": Symbol("matrix", ("R",) if "real_form" in kinds else (), letter="J"),
+        "foot": _shortened(derivation.title),
+    }
+    try:
+        main = environment.get_template(MAIN)
+        main.render(values)
+        references.next_pass()
+        return main.render(values)
+    except jinja2.TemplateNotFound as error:
+        raise TemplateError(str(template), None, f"it has no file {error.name}.") from error
+    except jinja2.TemplateSyntaxError as error:
+        place = error.filename or error.name or str(template)
+        raise TemplateError(place, error.lineno, f"{error.message}.") from error
+    except (OSError, UnicodeDecodeError) as error:
+        raise TemplateError(str(template), None, f"it cannot be read: {error}.") from error
+    except (jinja2.UndefinedError, jinja2.exceptions.SecurityError) as error:
+        place, line = _place(error)
+        raise TemplateError(place or str(template), line, f"{error.message}.") from error
+
+
+def _place(error: BaseException) -> tuple[str, int | None]:
+    """Return the innermost template file and line that an error passed through."""
+    found: tuple[str, int | None] = ("", None)
+    trace = error.__traceback__
+    while trace is not None:
+        name = trace.tb_frame.f_code.co_filename
+        if name.endswith(".j2"):
+            found = (name, trace.tb_lineno)
+        trace = trace.tb_next
+    return found
+
+
+def _loader(template: str) -> BaseLoader:
+    from jinja2 import ChoiceLoader, FileSystemLoader, FunctionLoader
+
+    shipped = templates_folder() / "latex"
+
+    def read(name: str) -> tuple[str, str, None] | None:
+        file = shipped.joinpath(*name.split("/"))
+        if ".." in name or not file.is_file():
+            return None
+        return file.read_text(encoding="utf-8"), f"templates/latex/{name}", None
+
+    if template == "latex":
+        return FunctionLoader(read)
+    if not Path(template).is_dir():
+        raise TemplateError(template, None, "no template and no folder has this name.")
+    return ChoiceLoader([FileSystemLoader(template), FunctionLoader(read)])
+
+
+def _environment(loader: BaseLoader, references: References) -> Environment:
+    from jinja2 import StrictUndefined
+    from jinja2.sandbox import SandboxedEnvironment
+
+    environment = SandboxedEnvironment(
+        loader=loader,
+        block_start_string="<%",
+        block_end_string="%>",
+        variable_start_string="<<",
+        variable_end_string=">>",
+        comment_start_string="<#",
+        comment_end_string="#>",
+        trim_blocks=True,
+        lstrip_blocks=True,
+        keep_trailing_newline=True,
+        undefined=StrictUndefined,
+        autoescape=False,  # LaTeX, not HTML: text of the user's goes through `text`
+    )
+    environment.filters |= FILTERS
+    environment.globals |= FUNCTIONS
+    environment.globals |= {
+        "display": references.display,
+        "displays": references.displays,
+        "cite": references.cite,
+        "refer": references.refer,
+        "section_label": references.section,
+    }
+    environment.tests["fits"] = fits
+    return environment
+
+
+def _time(derivation: Derivation) -> Name:
+    for step in derivation.steps:
+        time = step.facts.get("time")
+        if step.kind == "model" and isinstance(time, str):
+            return Name(time)
+    return Name("t")
+
+
+def _shortened(title: str) -> str:
+    words = " ".join(title.split())
+    return words if len(words) <= LONGEST_FOOT else f"{words[: LONGEST_FOOT - 1].rstrip()}…"
