@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from fractions import Fraction
+from itertools import product
 
 import pytest
 from hypothesis import given
@@ -127,6 +128,12 @@ def test_any_row_of_pieces_is_read_or_refused_with_a_place(text: str) -> None:
         assert error.place.line == 1
         assert error.place.column is not None
         assert 1 <= error.place.column <= len(text) + 1
+
+
+def test_all_short_rows_of_pieces_are_read_or_refused() -> None:
+    rows = [row for size in range(4) for row in product(PIECES, repeat=size)]
+    refused = [row for row in rows if refusal("".join(row))]
+    assert 0 < len(refused) < len(rows)
 
 
 @given(st.text(max_size=30) | st.text(alphabet="2x+-*/^() ", max_size=40))
