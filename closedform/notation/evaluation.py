@@ -21,9 +21,7 @@ from closedform.notation.expression import (
 __all__ = ["enclose"]
 
 
-def enclose(  # noqa: C901 - one case for each kind of node
-    expression: Expression, values: Mapping[str, arb]
-) -> arb:
+def enclose(expression: Expression, values: Mapping[str, arb]) -> arb:
     """Return a ball that contains the value of a formula, at flint's current precision.
 
     Where the formula has no real value (a division by zero, the root of a negative number)

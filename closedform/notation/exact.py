@@ -45,9 +45,7 @@ SIZE_LIMIT = (
 HALF = Fraction(1, 2)
 
 
-def exact_value(  # noqa: C901 - one case for each kind of node
-    expression: Expression, place: Place
-) -> SurdSum:
+def exact_value(expression: Expression, place: Place) -> SurdSum:
     """Return the exact value of a formula without names.
 
     Read are integers, fractions, decimals, + - * /, integer powers and square roots of

@@ -52,9 +52,7 @@ def linear_combination(
     return tuple(result.weights.get(state, ZERO) for state in states)
 
 
-def _linear(  # noqa: C901 - one case for each kind of node
-    expression: Expression, states: frozenset[str], place: Place
-) -> _Linear:
+def _linear(expression: Expression, states: frozenset[str], place: Place) -> _Linear:
     match expression:
         case Name(text) if text in states:
             return _Linear({text: ONE}, ZERO)
