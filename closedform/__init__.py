@@ -1,1 +1,54 @@
-"""Exact, proved closed-form responses of linear models with constant coefficients."""
+"""Exact, proved closed-form responses of linear models with constant coefficients.
+
+>>> import closedform
+>>> model = closedform.system([[0, 1], [-2, -3]], initial=[1, 0])
+>>> response = closedform.respond(model)
+>>> print(response.transition)
+[2*exp(-t) - exp(-2*t)    exp(-t) - exp(-2*t)]
+[2*(exp(-2*t) - exp(-t))  2*exp(-2*t) - exp(-t)]
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from closedform.document.writeup import WriteUp, write_up
+    from closedform.model.building import system
+    from closedform.model.model import Model
+    from closedform.model.reading import load
+    from closedform.response.response import Response, respond
+    from closedform.verification.record import VerificationRecord
+    from closedform.verification.verify import verify
+
+__all__ = [
+    "Model",
+    "Response",
+    "VerificationRecord",
+    "WriteUp",
+    "load",
+    "respond",
+    "system",
+    "verify",
+    "write_up",
+]
+
+_HOMES = {
+    "Model": "closedform.model.model",
+    "Response": "closedform.response.response",
+    "VerificationRecord": "closedform.verification.record",
+    "WriteUp": "closedform.document.writeup",
+    "load": "closedform.model.reading",
+    "respond": "closedform.response.response",
+    "system": "closedform.model.building",
+    "verify": "closedform.verification.verify",
+    "write_up": "closedform.document.writeup",
+}
+
+
+def __getattr__(name: str) -> object:
+    """Import a public name when it is first asked for: `import closedform` stays quick."""
+    if name not in _HOMES:
+        raise AttributeError(f"module 'closedform' has no attribute {name!r}")
+    return getattr(import_module(_HOMES[name]), name)

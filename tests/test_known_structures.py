@@ -20,7 +20,7 @@ TIMES = (Fraction(0), Fraction(1, 3), Fraction(-5, 7))
 
 def respond_to(system: KnownSystem) -> Any:
     return closedform.respond(
-        closedform.model(
+        closedform.system(
             title="known",
             states=[f"x{i + 1}" for i in range(system.order)],
             matrix=system.matrix,

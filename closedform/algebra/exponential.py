@@ -12,15 +12,16 @@ the R_j small: for a simple factor that is all of the spectrum, R_0 is the adjug
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
+from math import factorial
 
-from flint import acb, arb, arb_mat, ctx, fmpq
+from flint import acb, arb, arb_mat
 
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial
 from closedform.algebra.root_matrix import RootMatrix, coefficients_low_first, taylor_at_root
 from closedform.algebra.spectrum import Factor, Spectrum
+from closedform.algebra.surds import SurdSum
 
 __all__ = ["ExponentialMatrix", "ModalTerm", "exponential_by_resolvent"]
 
@@ -66,6 +67,26 @@ class ExponentialMatrix:
         total = self.field.zeros(*self.shape)
         for term in self.terms:
             total = total + term.residues[0].trace_form()
+        return total
+
+    def exact_entry(self, row: int, column: int, t: SurdSum) -> SurdSum | None:
+        """Return an entry at t as a surd sum, or None if it is transcendental.
+
+        At an algebraic t other than 0 an exponential polynomial is transcendental unless
+        only the eigenvalue 0 contributes (the theorem of Lindemann and Weierstrass; A. Baker,
+        Transcendental Number Theory, 1975, chapter 1).
+        """
+        if t.is_zero:
+            return self.field.surds(self.at_zero()[row, column].element)
+        total = SurdSum(())
+        for term in self.terms:
+            entries = [residue.entry(row, column) for residue in term.residues]
+            if term.factor.degree == 1 and not term.factor.roots.centre:
+                for power, entry in enumerate(entries):
+                    weight = SurdSum.rational(Fraction(1, factorial(power)))
+                    total += self.field.surds(entry.nth(0)) * t.power(power) * weight
+            elif any(not entry.is_zero for entry in entries):
+                return None
         return total
 
     def enclosure(self, t: arb) -> arb_mat:
@@ -199,23 +220,3 @@ def _horner(coefficients: list[arb], z: acb) -> acb:
 def _ball_matrix(field: BaseField, matrix: FieldMatrix) -> arb_mat:
     rows, columns = matrix.shape
     return arb_mat(rows, columns, [field.enclose(c) for row in matrix.to_list() for c in row])
-
-
-def enclosed_to(evaluate: Callable[[], arb_mat], digits: int, *, start_bits: int = 64) -> arb_mat:
-    """Return what `evaluate` encloses, at a precision that settles `digits` digits.
-
-    Every entry gets a radius below 10^-digits times the larger of 1 and its modulus.
-    """
-    bits = start_bits + 4 * digits
-    goal = arb(10) ** (-digits)
-    while True:
-        with ctx.workprec(bits):
-            balls = evaluate()
-            if all(e.rad() < goal * max(arb(1), abs(e.mid())) for e in balls.entries()):
-                return balls
-        bits *= 2
-
-
-def time_ball(t: Fraction) -> arb:
-    """Return a rational instant as a ball at FLINT's current precision."""
-    return arb(fmpq(t.numerator, t.denominator))

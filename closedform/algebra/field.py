@@ -14,13 +14,14 @@ from itertools import combinations
 from math import prod
 from typing import Any
 
-from flint import arb, ctx, fmpq
+from flint import arb, ctx
 from sympy import Integer, sqrt
 from sympy.polys.densebasic import dup_strip
 from sympy.polys.domains import QQ
 from sympy.polys.matrices import DomainMatrix
 from sympy.polys.polyclasses import DMP
 
+from closedform.algebra.enclosure import ball_of
 from closedform.algebra.surds import SurdSum, square_part
 
 __all__ = ["BaseField", "FieldMatrix", "Polynomial", "Scalar", "base_field", "rational"]
@@ -86,8 +87,7 @@ class BaseField:
 
     def enclose(self, element: Scalar) -> arb:
         """Return a ball that holds the element, at FLINT's current precision."""
-        terms = self.surds(element).terms
-        return sum((arb(_fmpq(c)) * arb(d).sqrt() for d, c in terms), arb(0))
+        return ball_of(self.surds(element))
 
     def sign(self, element: Scalar) -> int:
         """Return -1, 0 or 1: zero is decided in the field, the sign by refined enclosures."""
@@ -139,7 +139,3 @@ def base_field(numbers: Iterable[SurdSum]) -> BaseField:
 def rational(element: Scalar) -> Fraction:
     """Return a rational scalar, of whichever number type SymPy was set up with."""
     return Fraction(int(element.numerator), int(element.denominator))
-
-
-def _fmpq(value: Fraction) -> fmpq:
-    return fmpq(value.numerator, value.denominator)

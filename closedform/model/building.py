@@ -28,7 +28,7 @@ from closedform.model.source import Source
 from closedform.notation.linear import linear_combination
 from closedform.notation.reader import read_formula
 
-__all__ = ["build", "model_from"]
+__all__ = ["build", "model_from", "system"]
 
 REQUIRED = {
     "title": 'title = "Two tanks in series"',
@@ -61,6 +61,37 @@ def model_from(mapping: Mapping[str, object], *, name: str, place: Place = NOWHE
     Fraction(-1, 10)
     """
     return build(mapping, name, Source(place))
+
+
+def system(  # noqa: PLR0913  the keys of a model file, each by its name
+    matrix: object,
+    *,
+    initial: object,
+    states: Sequence[str] | None = None,
+    title: str = "A linear system",
+    outputs: Mapping[str, str] | None = None,
+    times: object = (),
+    time: str = "t",
+    name: str = "system",
+) -> Model:
+    """Return the model x' = matrix x, x(0) = initial, from Python values.
+
+    Numbers are as in `model_from`; the states are called x1, x2, … unless named.
+
+    >>> system([[0, 1], ["-1/4", 0]], initial=[1, 0]).states
+    ('x1', 'x2')
+    """
+    rows = _array(matrix, "an array of rows", "matrix", Source(NOWHERE))
+    mapping = {
+        "title": title,
+        "states": states or [f"x{k}" for k in range(1, len(rows) + 1)],
+        "matrix": matrix,
+        "initial": initial,
+        "outputs": outputs or {},
+        "times": times,
+        "time": time,
+    }
+    return model_from(mapping, name=name)
 
 
 def build(mapping: Mapping[str, object], name: str, source: Source) -> Model:

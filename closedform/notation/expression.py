@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
+from typing import TypeGuard
 
 __all__ = [
     "Call",
@@ -20,6 +21,7 @@ __all__ = [
     "Product",
     "Quotient",
     "Sum",
+    "is_expression",
     "number",
     "operations",
 ]
@@ -87,6 +89,11 @@ class Call:
 
 
 Expression = Number | Name | Negation | Sum | Product | Quotient | Power | Call
+
+
+def is_expression(item: object) -> TypeGuard[Expression]:
+    """Whether something is a node of a formula."""
+    return isinstance(item, Expression)
 
 
 def number(value: Fraction | int) -> Expression:

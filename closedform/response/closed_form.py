@@ -9,8 +9,9 @@ one with the fewest operations is kept; of equals, the earlier.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
+from math import lcm
 
 from closedform.algebra.surds import SurdSum
 from closedform.notation.expression import (
@@ -25,7 +26,7 @@ from closedform.notation.expression import (
 from closedform.response.amounts import content_of, opened, sum_of, weighted
 from closedform.response.modes import Amount, Contribution
 
-__all__ = ["closed_form", "exponential_of_rate"]
+__all__ = ["closed_form", "exponential_of_rate", "fronted_matrix"]
 
 _UNIT = SurdSum.rational(1)
 
@@ -53,6 +54,60 @@ def closed_form(contributions: Sequence[Contribution], time: str) -> Expression:
     if any(_splits(c) for c in contributions):
         forms.append(_written(_groups(contributions, time, paired=False)))
     return opened(min(forms, key=operations))
+
+
+Rows = tuple[tuple[Expression, ...], ...]
+
+
+def fronted_matrix(
+    entries: Sequence[Sequence[Sequence[Contribution]]], written: Rows, time: str
+) -> tuple[Expression | None, Rows]:
+    """Return a matrix of functions with a common factor in front, if that is shorter.
+
+    `written` is the same matrix with nothing in front.  The factor may be an exponential
+    that all entries share, a common denominator, or both.
+    """
+    rates = {c.mode.rate for row in entries for parts in row for c in parts}
+    forms: list[tuple[Expression | None, Rows]] = [(None, written)]
+    shared = exponential_of_rate(rates.pop(), time) if len(rates) == 1 else None
+    kept = [[list(parts) for parts in row] for row in entries]
+    if shared is not None:
+        kept = [[[_without_rate(c) for c in parts] for parts in row] for row in kept]
+        forms.append((shared, _written_rows(kept, time)))
+    common = lcm(*(d for row in kept for parts in row for c in parts for d in _denominators(c)))
+    if common > 1:
+        scaled = [[[_times(c, common) for c in parts] for parts in row] for row in kept]
+        front = weighted(SurdSum.rational(Fraction(1, common)), [shared] if shared else [], [])
+        forms.append((front, _written_rows(scaled, time)))
+    return min(forms, key=_operations_of_fronted)
+
+
+def _written_rows(entries: Sequence[Sequence[Sequence[Contribution]]], time: str) -> Rows:
+    return tuple(tuple(closed_form(parts, time) for parts in row) for row in entries)
+
+
+def _operations_of_fronted(form: tuple[Expression | None, Rows]) -> int:
+    front, rows = form
+    inside = sum(operations(entry) for row in rows for entry in row)
+    return inside + (operations(front) + 1 if front is not None else 0)
+
+
+def _without_rate(contribution: Contribution) -> Contribution:
+    return replace(contribution, mode=replace(contribution.mode, rate=SurdSum(())))
+
+
+def _denominators(contribution: Contribution) -> list[int]:
+    values = [a.value for pair in contribution.amounts for a in pair if a.name is None]
+    return [c.denominator for value in values for _, c in value.terms]
+
+
+def _times(contribution: Contribution, factor: int) -> Contribution:
+    scale = SurdSum.rational(factor)
+    amounts = tuple(
+        (replace(even, value=even.value * scale), replace(odd, value=odd.value * scale))
+        for even, odd in contribution.amounts
+    )
+    return replace(contribution, amounts=amounts)
 
 
 def exponential_of_rate(rate: SurdSum | str, time: str) -> Expression | None:

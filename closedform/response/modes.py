@@ -74,10 +74,11 @@ class Contribution:
     amounts: tuple[tuple[Amount, Amount], ...]
 
 
-def modes_of(factor: Factor, book: NameBook, *, name_surds: bool) -> tuple[Mode, ...]:
+def modes_of(factor: Factor, book: NameBook, *, first: int, name_surds: bool) -> tuple[Mode, ...]:
     """Return the modes of a factor, slowest first; numbers without a short form get names.
 
-    With `name_surds`, a frequency such as sqrt(79)/4 is named too.
+    `first` is the number of the factor's first eigenvalue.  With `name_surds`, a frequency
+    such as sqrt(79)/4 is named too.
     """
     roots, field = factor.roots, factor.roots.field
     centre = field.surds(roots.centre)
@@ -87,7 +88,7 @@ def modes_of(factor: Factor, book: NameBook, *, name_surds: bool) -> tuple[Mode,
         return (_quadratic_mode(factor, centre, book, name_surds=name_surds),)
     if roots.form == "even":
         return _even_modes(factor, centre, book)
-    return _named_modes(factor, book)
+    return _named_modes(factor, book, first)
 
 
 def contributions(
@@ -175,7 +176,7 @@ def surd_square(mode: Mode) -> SurdSum:
     return mean + half_gap if upper else mean - half_gap
 
 
-def _named_modes(factor: Factor, book: NameBook) -> tuple[Mode, ...]:
+def _named_modes(factor: Factor, book: NameBook, number: int) -> tuple[Mode, ...]:
     field, p = factor.roots.field, factor.p
     with ctx.workprec(_SORTING_BITS):
         found = [
@@ -186,12 +187,14 @@ def _named_modes(factor: Factor, book: NameBook) -> tuple[Mode, ...]:
     modes = []
     for _, _, which, real in sorted(found):
         if real:
-            name = book.name_of("lambda", RootPart(field, p, which, "real"))
+            name = book.name_of("lambda", RootPart(field, p, which, "real"), number=number)
             modes.append(Mode(factor, "real", name, None, which))
+            number += 1
         else:
             rate = book.name_of("alpha", RootPart(field, p, which, "real"))
             frequency = book.name_of("omega", RootPart(field, p, which, "imaginary"))
             modes.append(Mode(factor, "circular", rate, frequency, which))
+            number += 2
     return tuple(modes)
 
 

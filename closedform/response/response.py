@@ -5,16 +5,16 @@ from __future__ import annotations
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import cached_property
+from itertools import accumulate
 
 from flint import arb, arb_mat
 
 from closedform.algebra.canonical import JordanForm, jordan_form
+from closedform.algebra.enclosure import ball_of, enclosed_to
 from closedform.algebra.exponential import (
     ExponentialMatrix,
     ModalTerm,
-    enclosed_to,
     exponential_by_resolvent,
-    time_ball,
 )
 from closedform.algebra.field import BaseField, FieldMatrix, base_field
 from closedform.algebra.root_matrix import RootMatrix
@@ -22,9 +22,9 @@ from closedform.algebra.spectrum import Factor, Spectrum, spectrum_of
 from closedform.algebra.surds import SurdSum
 from closedform.model.model import Model
 from closedform.notation.expression import Expression, operations
-from closedform.response.closed_form import closed_form
-from closedform.response.modes import Mode, contributions, modes_of
-from closedform.response.names import NameBook, NamedConstant, Radical
+from closedform.response.closed_form import closed_form, fronted_matrix
+from closedform.response.modes import Contribution, Mode, contributions, modes_of
+from closedform.response.names import NameBook, NamedConstant, Radical, ResiduePart
 
 __all__ = ["LARGEST_WRITTEN_OUT", "ClosedForms", "Response", "respond"]
 
@@ -37,16 +37,23 @@ class ClosedForms:
     """The formulas of a response, and the constants that they name.
 
     `modes` and `impulses` follow the factors of the spectrum; an impulse is
-    g(t) = sum over the roots of e^(lambda t)/p'(lambda), given for degree 3 and more.
-    `transition` has n rows of n formulas, or is empty beyond `LARGEST_WRITTEN_OUT` states.
+    g(t) = sum over the roots of e^(lambda t)/p'(lambda), given when a factor has degree 3 or more.
+    `transition` has n rows of n formulas, or is empty beyond `LARGEST_WRITTEN_OUT` states;
+    `fronted_transition` is the same with what all entries share in front.
     """
 
     modes: tuple[tuple[Mode, ...], ...]
     solution: tuple[Expression, ...]
     outputs: tuple[Expression, ...]
     transition: tuple[tuple[Expression, ...], ...]
+    fronted_transition: tuple[Expression | None, tuple[tuple[Expression, ...], ...]]
     impulses: tuple[Expression | None, ...]
     constants: tuple[NamedConstant, ...]
+
+    @property
+    def names_amounts(self) -> bool:
+        """Whether e^(At) needs names for amounts: then it is printed through its residues."""
+        return any(isinstance(c.definition, ResiduePart) for c in self.constants)
 
     @property
     def operations(self) -> int:
@@ -97,11 +104,11 @@ class Response:
 
     def transition_at(self, t: Fraction, digits: int = 30) -> list[list[arb]]:
         """Return balls for the entries of e^(At) at an instant, settled to `digits` digits."""
-        return _rows(enclosed_to(lambda: self.exponential.enclosure(time_ball(t)), digits))
+        return _rows(enclosed_to(lambda: self.exponential.enclosure(ball_of(t)), digits))
 
     def solution_at(self, t: Fraction, digits: int = 30) -> list[arb]:
         """Return balls for x(t) at an instant, settled to `digits` digits."""
-        balls = enclosed_to(lambda: self.state.enclosure(time_ball(t)), digits)
+        balls = enclosed_to(lambda: self.state.enclosure(ball_of(t)), digits)
         return [row[0] for row in _rows(balls)]
 
 
@@ -143,33 +150,41 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     """Names are given in the order of printing: roots, solution, outputs, e^(At)."""
     model, factors = response.model, response.spectrum.factors
     book = NameBook(frozenset({*model.states, *(o.name for o in model.outputs), model.time}))
-    modes = tuple(modes_of(f, book, name_surds=name_surds) for f in factors)
+    first = accumulate((f.degree for f in factors), initial=1)
+    modes = tuple(
+        modes_of(f, book, first=number, name_surds=name_surds)
+        for f, number in zip(factors, first, strict=False)
+    )
 
-    def formula(function: ExponentialMatrix, row: int, column: int) -> Expression:
-        parts = [
+    def parts(function: ExponentialMatrix, row: int, column: int) -> list[Contribution]:
+        return [
             contribution
             for modes_of_factor, term in zip(modes, function.terms, strict=True)
             for contribution in contributions(modes_of_factor, term, row, column, book)
         ]
-        return closed_form(parts, model.time)
+
+    def formula(function: ExponentialMatrix, row: int) -> Expression:
+        return closed_form(parts(function, row, 0), model.time)
 
     n = len(model.states)
-    solution = tuple(formula(response.state, i, 0) for i in range(n))
+    solution = tuple(formula(response.state, i) for i in range(n))
     outputs: tuple[Expression, ...] = ()
     if response.output is not None:
-        outputs = tuple(formula(response.output, i, 0) for i in range(len(model.outputs)))
+        outputs = tuple(formula(response.output, i) for i in range(len(model.outputs)))
     transition: tuple[tuple[Expression, ...], ...] = ()
+    fronted: tuple[Expression | None, tuple[tuple[Expression, ...], ...]] = (None, ())
     if n <= LARGEST_WRITTEN_OUT:
-        transition = tuple(
-            tuple(formula(response.exponential, i, k) for k in range(n)) for i in range(n)
-        )
+        entries = [[parts(response.exponential, i, k) for k in range(n)] for i in range(n)]
+        transition = tuple(tuple(closed_form(e, model.time) for e in row) for row in entries)
+        fronted = fronted_matrix(entries, transition, model.time)
+    needs_impulses = any(factor.degree > 2 for factor in factors)
     impulses = tuple(
         _impulse(response.field, factor, modes_of_factor, book, model.time)
-        if factor.degree > 2
+        if needs_impulses
         else None
         for factor, modes_of_factor in zip(factors, modes, strict=True)
     )
-    return ClosedForms(modes, solution, outputs, transition, impulses, book.constants())
+    return ClosedForms(modes, solution, outputs, transition, fronted, impulses, book.constants())
 
 
 def _impulse(

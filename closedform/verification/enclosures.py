@@ -13,7 +13,7 @@ from typing import Any
 import mpmath
 from flint import acb_mat, arb, arb_mat, ctx
 
-from closedform.algebra.exponential import enclosed_to, time_ball
+from closedform.algebra.enclosure import ball_of, enclosed_to
 from closedform.notation import enclose, plain, read_formula
 from closedform.notation.expression import Expression
 from closedform.response.names import constant_values
@@ -64,7 +64,7 @@ def formula_check(response: Response, times: tuple[Fraction, ...]) -> Check:
         with ctx.workprec(64 + 5 * DIGITS):
             transition = _ball_exponential(response, t)
             expected = _expected(response, transition)
-            values = {**constant_values(forms.constants), response.model.time: time_ball(t)}
+            values = {**constant_values(forms.constants), response.model.time: ball_of(t)}
             for place, formula in parsed.items():
                 ball = enclose(formula, values)
                 if not (ball.is_finite() and ball.overlaps(expected[place])):
@@ -84,7 +84,7 @@ def determinant_ball_check(response: Response, times: tuple[Fraction, ...]) -> C
     item = "det e^(At), numbers"
     for t in times:
         with ctx.workprec(128 + 4 * DIGITS + 32 * response.matrix.shape[0]):
-            determinant = response.exponential.enclosure(time_ball(t)).det()
+            determinant = response.exponential.enclosure(ball_of(t)).det()
             trace = sum(
                 (
                     response.field.enclose(response.matrix[i, i].element)
@@ -92,7 +92,7 @@ def determinant_ball_check(response: Response, times: tuple[Fraction, ...]) -> C
                 ),
                 arb(0),
             )
-            if not determinant.overlaps((trace * time_ball(t)).exp()):
+            if not determinant.overlaps((trace * ball_of(t)).exp()):
                 return Check(item, "refuted", f"differs at t = {t}")
     return Check(item, "enclosed", f"balls meet at t = {_listed(times)}")
 
@@ -108,7 +108,7 @@ def mpmath_check(response: Response, times: tuple[Fraction, ...]) -> Check:
     for t in times:
         ours = _own_exponential(response, t)
         with ctx.workprec(8 * DIGITS):
-            scaled = _ball_matrix(response) * time_ball(t)
+            scaled = _ball_matrix(response) * ball_of(t)
             entries = [mp.mpf(e.mid().str(3 * DIGITS, radius=False)) for e in scaled.entries()]
         theirs = mp.expm(mp.matrix(n, n) + mp.matrix(_rows(entries, n)), method="taylor")
         size = max(1, *(abs(e) for e in theirs))
@@ -127,14 +127,14 @@ def _ball_matrix(response: Response) -> arb_mat:
 
 
 def _own_exponential(response: Response, t: Fraction) -> arb_mat:
-    return enclosed_to(lambda: response.exponential.enclosure(time_ball(t)), DIGITS + 5)
+    return enclosed_to(lambda: response.exponential.enclosure(ball_of(t)), DIGITS + 5)
 
 
 def _ball_exponential(response: Response, t: Fraction) -> arb_mat:
     """e^(At) by the scaling and Taylor series of acb_mat, as a real matrix."""
 
     def evaluate() -> arb_mat:
-        value = acb_mat(_ball_matrix(response) * time_ball(t)).exp()
+        value = acb_mat(_ball_matrix(response) * ball_of(t)).exp()
         return arb_mat(value.nrows(), value.ncols(), [e.real for e in value.entries()])
 
     return enclosed_to(evaluate, DIGITS + 5)
@@ -155,7 +155,10 @@ def _expected(response: Response, transition: arb_mat) -> dict[str, arb]:
     model, field = response.model, response.field
     n = len(model.states)
     found = {
-        f"entry ({i + 1}, {k + 1}) of e^(At)": transition[i, k] for i in range(n) for k in range(n)
+        f"entry ({i + 1}, {k + 1}) of e^(At){written}": transition[i, k]
+        for i in range(n)
+        for k in range(n)
+        for written in ("", ", factor in front")
     }
     initial = arb_mat(n, 1, [field.enclose(row[0]) for row in response.initial.to_list()])
     state = transition * initial

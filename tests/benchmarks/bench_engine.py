@@ -86,7 +86,7 @@ def ours(rows: Rows) -> Result:
     from closedform.verification.verify import prove
 
     def answer(matrix: Rows) -> tuple[Any, Any]:
-        model = closedform.model(
+        model = closedform.system(
             title="timed",
             states=[f"x{i + 1}" for i in range(len(matrix))],
             matrix=[[model_entry(entry) for entry in row] for row in matrix],

@@ -60,7 +60,7 @@ TIME = Fraction(3, 4)
 def respond_to(matrix: Rows, initial: list[Fraction] | None = None) -> Any:
     n = len(matrix)
     return closedform.respond(
-        closedform.model(
+        closedform.system(
             title="beside a general library",
             states=[f"x{i + 1}" for i in range(n)],
             matrix=matrix,

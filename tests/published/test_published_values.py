@@ -35,7 +35,7 @@ def response_of(identifier: str) -> Any:
     value = VALUES[identifier]
     n = len(value["matrix"])
     return closedform.respond(
-        closedform.model(
+        closedform.system(
             title=identifier,
             states=[f"x{i + 1}" for i in range(n)],
             matrix=value["matrix"],

@@ -1,0 +1,107 @@
+"""Certified digits: decimals whose every figure is settled by ball arithmetic."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from decimal import ROUND_HALF_EVEN, Context, Decimal
+from fractions import Fraction
+
+from flint import arb, arb_mat, ctx, fmpq
+
+from closedform.algebra.surds import SurdSum
+
+__all__ = [
+    "ball_of",
+    "certified_decimal",
+    "enclosed_to",
+    "exact_decimal",
+]
+
+_MOST_BITS = 1 << 16
+
+
+def ball_of(value: SurdSum | Fraction) -> arb:
+    """Return an exact number as a ball at FLINT's current precision."""
+    if isinstance(value, Fraction):
+        return arb(fmpq(value.numerator, value.denominator))
+    return sum((ball_of(c) * arb(d).sqrt() for d, c in value.terms), arb(0))
+
+
+def enclosed_to(evaluate: Callable[[], arb_mat], digits: int) -> arb_mat:
+    """Return what `evaluate` encloses, at a precision that settles `digits` digits.
+
+    Every entry gets a radius below 10^-digits times the larger of 1 and its modulus.
+    """
+    bits = 64 + 4 * digits
+    goal = arb(10) ** (-digits)
+    while True:
+        with ctx.workprec(bits):
+            balls = evaluate()
+            if all(e.rad() < goal * max(arb(1), abs(e.mid())) for e in balls.entries()):
+                return balls
+        bits *= 2
+
+
+def certified_decimal(evaluate: Callable[[], arb], digits: int) -> str:
+    """Return an irrational number correctly rounded to `digits` significant digits.
+
+    `evaluate` encloses it at FLINT's current precision.  A number that is still not told
+    from zero at 2^16 bits is given as 0.
+    """
+    bits = 64 + 4 * digits
+    while bits <= _MOST_BITS:
+        with ctx.workprec(bits):
+            found = _settled(evaluate(), digits)
+        if found is not None:
+            return found
+        bits *= 2
+    return "0"
+
+
+def exact_decimal(value: Fraction, digits: int) -> str:
+    """Return a rational number rounded to `digits` significant digits, ties to even.
+
+    A number that needs fewer digits is given exactly.
+    """
+    context = Context(prec=digits, rounding=ROUND_HALF_EVEN)
+    quotient = context.divide(Decimal(value.numerator), Decimal(value.denominator))
+    return _text(quotient.normalize(context))
+
+
+def _settled(ball: arb, digits: int) -> str | None:
+    """The digits of a ball if they are the same all over it."""
+    if not ball.is_finite() or ball.contains(0):
+        return None
+    order = _decimal_order(ball)
+    for exponent in (order, order + 1):
+        whole = ((ball * arb(10) ** (digits - 1 - exponent)) + arb(0.5)).floor().unique_fmpz()
+        if whole is None:
+            return None
+        if abs(int(whole)) < 10**digits:
+            figures = tuple(map(int, str(abs(int(whole)))))
+            return _text(Decimal((int(whole) < 0, figures, exponent - digits + 1)))
+    return None
+
+
+def _decimal_order(ball: arb) -> int:
+    """The exponent of the first digit: floor(log10 |x|) of the midpoint."""
+    mantissa, exponent = ball.mid().man_exp()
+    # A first guess from the binary length, put right by comparing.
+    guess = (abs(int(mantissa)).bit_length() - 1 + int(exponent)) * 30103 // 100000
+    while arb(10) ** (guess + 1) <= abs(ball.mid()):
+        guess += 1
+    while arb(10) ** guess > abs(ball.mid()):
+        guess -= 1
+    return guess
+
+
+def _text(value: Decimal) -> str:
+    """Fixed point for numbers of everyday size, otherwise with a power of ten."""
+    if value == 0:
+        return "0"
+    if -5 <= value.adjusted() <= 8 and value.adjusted() - len(value.as_tuple().digits) < 12:
+        return format(value, "f")
+    sign, figures, _ = value.as_tuple()
+    text = "".join(map(str, figures))
+    mantissa = text[0] + ("." + text[1:] if len(text) > 1 else "")
+    return f"{'-' if sign else ''}{mantissa}e{value.adjusted()}"

@@ -1,0 +1,76 @@
+"""From a proved response to its derivation: which steps there are, and in which order."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from closedform.derivation.canonical_steps import canonical_steps, has_canonical_steps
+from closedform.derivation.resolvent_steps import resolvent_steps
+from closedform.derivation.result_steps import (
+    abbreviations_step,
+    cautions_step,
+    names_in,
+    outputs_step,
+    solution_step,
+    transition_step,
+    values_step,
+    verification_step,
+)
+from closedform.derivation.spectrum_steps import (
+    characteristic_polynomial_step,
+    eigenvalues_step,
+    model_step,
+    named_roots_steps,
+)
+from closedform.derivation.step import Derivation, Step
+from closedform.notation.expression import Expression, is_expression
+from closedform.response.response import Response
+from closedform.verification.record import VerificationRecord
+
+__all__ = ["derive"]
+
+
+def derive(response: Response, record: VerificationRecord, *, digits: int = 6) -> Derivation:
+    """Return the derivation of a response that holds, with `digits` figures in its tables.
+
+    Raises ValueError if the record does not hold: nothing is derived from a refuted result.
+    """
+    if not record.holds:
+        raise ValueError("only a response that was proved is derived")
+    return Derivation(response.model.title, tuple(_steps(response, record, digits)))
+
+
+def _steps(response: Response, record: VerificationRecord, digits: int) -> Iterator[Step]:
+    forms = response.closed_forms
+    yield model_step(response)
+    yield characteristic_polynomial_step(response)
+    yield eigenvalues_step(response, digits)
+    yield from named_roots_steps(response, digits)
+    shown: list[Step] = []
+    if has_canonical_steps(response):
+        shown += canonical_steps(response)
+    else:
+        shown += resolvent_steps(response)
+    if forms.transition and not forms.names_amounts:
+        shown.append(
+            transition_step(response, is_complex=any(step.kind == "real_form" for step in shown))
+        )
+    shown.append(solution_step(response))
+    if response.model.outputs:
+        shown.append(outputs_step(response))
+    yield from shown
+    abbreviations = abbreviations_step(response, names_in(_formulas(shown)), digits)
+    if abbreviations is not None:
+        yield abbreviations
+    yield values_step(response, digits)
+    yield verification_step(record)
+    yield cautions_step()
+
+
+def _formulas(steps: list[Step]) -> Iterator[Expression]:
+    """The formulas that the steps print as results."""
+    for step in steps:
+        for statement in step.statements:
+            for side in statement.sides:
+                if is_expression(side):
+                    yield side

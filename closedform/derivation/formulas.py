@@ -1,0 +1,129 @@
+"""Exact objects as the formulas and symbols of which statements are made."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from fractions import Fraction
+
+from closedform.algebra.field import BaseField, Polynomial
+from closedform.algebra.surds import SurdSum
+from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
+from closedform.notation.expression import Expression, Name, Number, Power, Sum
+from closedform.response.amounts import opened, sum_of, surd_formula, weighted
+from closedform.response.modes import Mode
+
+__all__ = [
+    "LAMBDA",
+    "ONE",
+    "ZERO",
+    "A",
+    "chain_vector",
+    "column",
+    "complex_formula",
+    "eigenvalue_formula",
+    "eigenvalue_symbol",
+    "frequency_formula",
+    "number_formula",
+    "polynomial_formula",
+    "surd_matrix",
+]
+
+A = Symbol("matrix", letter="A")
+LAMBDA = Name("lambda")
+ZERO = Number(Fraction(0))
+ONE = Number(Fraction(1))
+
+
+def number_formula(value: SurdSum | str) -> Expression:
+    """Return a number, or the name of one, as a formula."""
+    return Name(value) if isinstance(value, str) else surd_formula(value)
+
+
+def polynomial_formula(field: BaseField, polynomial: Polynomial, variable: Name) -> Expression:
+    """Return a polynomial over the field, highest power first."""
+    degree = max(int(polynomial.degree()), 0)
+    terms = []
+    for power, element in zip(range(degree, -1, -1), polynomial.to_list(), strict=True):
+        value = field.surds(element)
+        if not value.is_zero:
+            terms.append(weighted(value, _power(variable, power), []))
+    return opened(_in_order(terms))
+
+
+def _in_order(terms: Sequence[Expression]) -> Expression:
+    """A polynomial keeps its order of powers, whatever the signs."""
+    if len(terms) > 1:
+        return Sum(tuple(terms))
+    return sum_of(terms)
+
+
+def _power(variable: Name, power: int) -> list[Expression]:
+    if power == 0:
+        return []
+    return [variable if power == 1 else Power(variable, Number(Fraction(power)))]
+
+
+def frequency_formula(value: SurdSum, frequency: SurdSum | str | None) -> Expression:
+    """Return value · frequency as a formula."""
+    if value.is_zero:
+        return ZERO
+    if isinstance(frequency, SurdSum):
+        return surd_formula(value * frequency)
+    return weighted(value, [Name(frequency)] if frequency else [], [])
+
+
+def complex_formula(real: SurdSum, turn: SurdSum, frequency: SurdSum | str | None) -> Expression:
+    """Return real + i · turn · frequency as a formula."""
+    terms = [] if real.is_zero else [surd_formula(real)]
+    if not turn.is_zero:
+        if isinstance(frequency, SurdSum):
+            terms.append(weighted(turn * frequency, [IMAGINARY_UNIT], []))
+        else:
+            terms.append(weighted(turn, [Name(str(frequency)), IMAGINARY_UNIT], []))
+    return opened(sum_of(terms))
+
+
+def eigenvalue_formula(mode: Mode, sign: int = 1) -> Expression:
+    """Return the eigenvalue of a mode: a, a ± b, or a ± i w, with the sign asked for."""
+    one = SurdSum.rational(sign)
+    if mode.kind == "real":
+        return number_formula(mode.rate)
+    if isinstance(mode.rate, str):
+        frequency = Name(str(mode.frequency))
+        turned = weighted(one, [frequency, IMAGINARY_UNIT], [])
+        return sum_of([Name(mode.rate), turned])
+    if mode.kind == "circular":
+        return complex_formula(mode.rate, one, mode.frequency)
+    if isinstance(mode.frequency, SurdSum):
+        return surd_formula(mode.rate + one * mode.frequency)
+    parts = [] if mode.rate.is_zero else [surd_formula(mode.rate)]
+    return opened(sum_of([*parts, frequency_formula(one, mode.frequency)]))
+
+
+def eigenvalue_symbol(numbers: Sequence[int]) -> Symbol:
+    """Return lambda_k, or lambda_(k,k+1) for a pair."""
+    return Symbol("scalar", letter="lambda", indices=(",".join(map(str, numbers)),))
+
+
+def column(entries: Sequence[Expression]) -> Matrix:
+    """Return a column of formulas."""
+    return Matrix(tuple((entry,) for entry in entries))
+
+
+def surd_matrix(rows: Sequence[Sequence[SurdSum]]) -> Matrix:
+    """Return a matrix of numbers, with a common denominator in front where that is shorter."""
+    denominators = {c.denominator for row in rows for value in row for _, c in value.terms}
+    if len(denominators) == 1 and denominators != {1} and len(rows) > 1:
+        common = Fraction(denominators.pop())
+        scaled = [[value * SurdSum.rational(common) for value in row] for row in rows]
+        return Matrix(_formulas(scaled), front=Number(1 / common))
+    return Matrix(_formulas(rows))
+
+
+def _formulas(rows: Sequence[Sequence[SurdSum]]) -> tuple[tuple[Expression, ...], ...]:
+    return tuple(tuple(map(surd_formula, row)) for row in rows)
+
+
+def chain_vector(number: int | str) -> Side:
+    """Return the symbol v_number."""
+    return Symbol("vector", letter="v", indices=(str(number),))

@@ -1,0 +1,195 @@
+"""The steps that state results: e^(At), the solution, outputs, values, and what was proved."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from closedform.algebra.surds import SurdSum
+from closedform.derivation.canonical_steps import has_canonical_steps
+from closedform.derivation.formulas import eigenvalue_formula, polynomial_formula
+from closedform.derivation.identities import identity_statement
+from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
+from closedform.notation.expression import Call, Expression, Name, Number, number
+from closedform.notation.plain import plain
+from closedform.response.amounts import surd_formula
+from closedform.response.names import NamedConstant, ResiduePart
+from closedform.response.response import LARGEST_WRITTEN_OUT, Response
+from closedform.response.sampling import constant_decimal, default_times, sampled
+from closedform.verification.record import VerificationRecord
+
+__all__ = [
+    "abbreviations_step",
+    "cautions_step",
+    "outputs_step",
+    "solution_step",
+    "transition_step",
+    "values_step",
+    "verification_step",
+]
+
+
+def transition_step(response: Response, *, is_complex: bool) -> Step:
+    """State e^(At) entry by entry."""
+    t = Name(response.model.time)
+    forms = response.closed_forms
+    sides: list[Side] = [Symbol("transition", argument=t)]
+    route = "resolvent"
+    if has_canonical_steps(response):
+        route = "form"
+        index = ("R",) if is_complex else ()
+        sides.append(
+            (
+                Symbol("matrix", letter="P", indices=index),
+                Symbol("exponential", letter="J", indices=index, argument=t),
+                Symbol("inverse", letter="P", indices=index),
+            )
+        )
+    front, rows = forms.fronted_transition
+    sides.append(Matrix(rows, front=front))
+    rests_on = ("exponential_of_form",) if route == "form" else ("resolvent",)
+    return Step(
+        "transition", (Statement("exp A", tuple(sides)),), {"route": route}, rests_on=rests_on
+    )
+
+
+def solution_step(response: Response) -> Step:
+    """State x(t), one formula for each state that is shown."""
+    t = Name(response.model.time)
+    model, forms = response.model, response.closed_forms
+    shown = len(model.states)
+    if shown > LARGEST_WRITTEN_OUT:
+        shown = 0 if model.outputs else LARGEST_WRITTEN_OUT
+    statements = [
+        Statement("solution of state", (_function(state, t), formula))
+        for state, formula in zip(model.states[:shown], forms.solution, strict=False)
+    ]
+    facts = {"shown": shown, "n": len(model.states)}
+    return Step("solution", tuple(statements), facts, rests_on=("transition",))
+
+
+def outputs_step(response: Response) -> Step:
+    """State the outputs as functions of time."""
+    t = Name(response.model.time)
+    statements = [
+        Statement("output", (_function(output.name, t), formula))
+        for output, formula in zip(
+            response.model.outputs, response.closed_forms.outputs, strict=True
+        )
+    ]
+    return Step("outputs", tuple(statements), {}, rests_on=("solution",))
+
+
+def _function(name: str, t: Expression) -> Symbol:
+    return Symbol("scalar", letter=name, argument=t)
+
+
+def abbreviations_step(response: Response, shown: frozenset[str], digits: int) -> Step | None:
+    """Define the constants that the printed formulas use, apart from roots and radicals."""
+    rows = [
+        _abbreviation(response, constant, digits)
+        for constant in response.closed_forms.constants
+        if isinstance(constant.definition, ResiduePart) and constant.name in shown
+    ]
+    if not rows:
+        return None
+    return Step("abbreviations", (), {"rows": rows}, rests_on=("solution",))
+
+
+def _abbreviation(response: Response, constant: NamedConstant, digits: int) -> dict[str, object]:
+    """C = weight · Re or Im of r(lambda)/p'(lambda) at a named root lambda."""
+    definition = constant.definition
+    if not isinstance(definition, ResiduePart):
+        raise TypeError("only amounts of modes are abbreviations")
+    mode = next(
+        mode
+        for modes in response.closed_forms.modes
+        for mode in modes
+        if mode.factor.p == definition.polynomial and mode.which == definition.which
+    )
+    factor = response.spectrum.factors.index(mode.factor) + 1
+    several = len(response.spectrum.factors) > 1
+    return {
+        "name": Name(constant.name),
+        "weight": number(definition.weight),
+        "part": definition.part,
+        "real": mode.kind == "real",
+        "numerator": polynomial_formula(response.field, definition.numerator, Name("lambda")),
+        "factor": str(factor) if several else "",
+        "at": eigenvalue_formula(mode),
+        "decimal": constant_decimal(constant, digits),
+    }
+
+
+def values_step(response: Response, digits: int) -> Step:
+    """Tabulate certified values at the instants asked for, or at some that suit."""
+    model = response.model
+    times = model.times or default_times(response)
+    t = Name(model.time)
+    few = len(model.states) <= LARGEST_WRITTEN_OUT or not model.outputs
+    names = (*(model.states if few else ()), *(o.name for o in model.outputs))
+    columns = [sampled(response.state, times, digits)] if few else []
+    if response.output is not None:
+        columns.append(sampled(response.output, times, digits))
+    rows = [
+        [_instant(time), *(value for column in columns for value in column[i])]
+        for i, time in enumerate(times)
+    ]
+    header: list[Side] = [t, *(_function(name, t) for name in names)]
+    facts = {"header": header, "rows": rows, "digits": digits, "chosen": not model.times}
+    return Step("values", (), facts, rests_on=("solution",))
+
+
+def _instant(time: SurdSum) -> str:
+    if time.is_rational:
+        value = time.as_fraction()
+        denominator = value.denominator
+        for prime in (2, 5):
+            while denominator % prime == 0:
+                denominator //= prime
+        if denominator == 1:
+            return _terminating(value.numerator, value.denominator)
+    return plain(surd_formula(time))
+
+
+def _terminating(numerator: int, denominator: int) -> str:
+    places = 0
+    while 10**places % denominator:
+        places += 1
+    digits = str(abs(numerator) * 10**places // denominator).rjust(places + 1, "0")
+    sign = "-" if numerator < 0 else ""
+    whole, part = (digits[:-places], digits[-places:]) if places else (digits, "")
+    return f"{sign}{whole}.{part}" if part else f"{sign}{whole}"
+
+
+def verification_step(record: VerificationRecord) -> Step:
+    """List what was proved or enclosed, and how."""
+    rows = [
+        {"item": identity_statement(check.item), "outcome": check.outcome, "how": check.how}
+        for check in record.checks
+    ]
+    return Step("verification", (), {"rows": rows})
+
+
+def cautions_step() -> Step:
+    """Say what the proof does not cover."""
+    return Step("cautions")
+
+
+def names_in(expressions: Iterator[Expression]) -> frozenset[str]:
+    """Return every name that the formulas use."""
+    found: set[str] = set()
+    pending = list(expressions)
+    while pending:
+        expression = pending.pop()
+        match expression:
+            case Name(text):
+                found.add(text)
+            case Number():
+                pass
+            case Call(_, argument):
+                pending.append(argument)
+            case _:
+                for attribute in expression.__slots__:
+                    value = getattr(expression, attribute)
+                    pending += value if isinstance(value, tuple) else [value]
+    return frozenset(found)

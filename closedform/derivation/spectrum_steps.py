@@ -1,0 +1,244 @@
+"""The steps from the model to its eigenvalues."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from closedform.algebra.spectrum import Factor
+from closedform.algebra.surds import SurdSum
+from closedform.derivation.formulas import (
+    LAMBDA,
+    ZERO,
+    A,
+    column,
+    eigenvalue_symbol,
+    number_formula,
+    polynomial_formula,
+    surd_matrix,
+)
+from closedform.derivation.step import Side, Statement, Step, Symbol
+from closedform.notation.expression import (
+    Expression,
+    Name,
+    Power,
+    Product,
+    number,
+)
+from closedform.response.amounts import opened, sum_of, surd_formula, weighted
+from closedform.response.modes import Mode
+from closedform.response.names import NamedConstant, Radical, RootPart
+from closedform.response.response import Response
+from closedform.response.sampling import constant_decimal, isolating_interval, surd_decimal
+
+__all__ = [
+    "Eigenvalue",
+    "characteristic_polynomial_step",
+    "eigenvalues_of",
+    "eigenvalues_step",
+    "model_step",
+    "named_roots_steps",
+]
+
+
+@dataclass(frozen=True)
+class Eigenvalue:
+    """A mode with the numbers under which its one or two eigenvalues are printed."""
+
+    factor: Factor
+    mode: Mode
+    numbers: tuple[int, ...]
+
+
+def eigenvalues_of(response: Response) -> tuple[Eigenvalue, ...]:
+    """Return the eigenvalues in the order of printing, pairs together."""
+    found, number_ = [], 1
+    for factor, modes in zip(response.spectrum.factors, response.closed_forms.modes, strict=True):
+        for mode in modes:
+            size = 1 if mode.kind == "real" else 2
+            found.append(Eigenvalue(factor, mode, tuple(range(number_, number_ + size))))
+            number_ += size
+    return tuple(found)
+
+
+def model_step(response: Response) -> Step:
+    """State the model as the user gave it."""
+    model = response.model
+    x, t = Symbol("vector", letter="x"), Name(model.time)
+    statements = [
+        Statement("system", (Symbol("derivative", letter="x", argument=t), (A, _at(x, t)))),
+        Statement("matrix", (A, surd_matrix(model.matrix))),
+        Statement(
+            "initial",
+            (
+                Symbol("vector", letter="x", argument=number(0)),
+                Symbol("vector", letter="x", indices=("0",)),
+                column([surd_formula(value) for value in model.initial]),
+            ),
+        ),
+    ]
+    for output in model.outputs:
+        terms = [
+            weighted(w, [Name(state)], [])
+            for w, state in zip(output.weights, model.states, strict=True)
+            if not w.is_zero
+        ]
+        statements.append(Statement("output", (Name(output.name), opened(sum_of(terms)))))
+    facts = {
+        "title": model.title,
+        "summary": model.summary,
+        "states": model.states,
+        "time": model.time,
+        "n": len(model.states),
+        "outputs": [output.name for output in model.outputs],
+    }
+    return Step("model", tuple(statements), facts)
+
+
+def _at(symbol: Symbol, t: Expression) -> Symbol:
+    return Symbol(symbol.kind, symbol.indices, t, symbol.letter)
+
+
+def characteristic_polynomial_step(response: Response) -> Step:
+    """det(lambda I - A), expanded and factored."""
+    field, spectrum = response.field, response.spectrum
+    expanded = polynomial_formula(field, spectrum.characteristic_polynomial, LAMBDA)
+    sides: list[Side] = [
+        Symbol("characteristic polynomial"),
+        Symbol("determinant", letter="A"),
+        expanded,
+    ]
+    factored = _factored(response)
+    if factored != expanded:
+        sides.append(factored)
+    return Step(
+        "characteristic_polynomial",
+        (Statement("characteristic polynomial", tuple(sides)),),
+        {"degree": len(response.model.states)},
+        rests_on=("model",),
+    )
+
+
+def _factored(response: Response) -> Expression:
+    factors: list[Expression] = []
+    for factor in response.spectrum.factors:
+        body = polynomial_formula(response.field, factor.p, LAMBDA)
+        if factor.multiplicity > 1:
+            body = Power(body, number(factor.multiplicity))
+        factors.append(body)
+    return factors[0] if len(factors) == 1 else Product(tuple(factors))
+
+
+def eigenvalues_step(response: Response, digits: int) -> Step:
+    """List the eigenvalues with multiplicity, index and blocks."""
+    statements, rows = [], []
+    for eigenvalue in eigenvalues_of(response):
+        mode, factor = eigenvalue.mode, eigenvalue.factor
+        symbol = eigenvalue_symbol(eigenvalue.numbers)
+        value = _value(mode)
+        if value is not None:
+            statements.append(Statement("eigenvalues", (symbol, value)))
+        rows.append(
+            {
+                "eigenvalue": symbol,
+                "multiplicity": factor.multiplicity,
+                "index": factor.index,
+                "blocks": factor.blocks,
+                "meaning": _MEANINGS[mode.kind],
+                "decimal": _decimal(response, mode, digits),
+            }
+        )
+    facts: dict[str, object] = {"rows": rows, "field": _field_name(response)}
+    return Step("eigenvalues", tuple(statements), facts, rests_on=("characteristic_polynomial",))
+
+
+_MEANINGS = {"real": "real", "circular": "conjugate pair", "hyperbolic": "real pair"}
+
+
+def _value(mode: Mode) -> Side | None:
+    if mode.kind == "real":
+        return None if isinstance(mode.rate, str) else surd_formula(mode.rate)
+    if mode.frequency is None:
+        raise TypeError("a pair has a frequency")
+    kind = "pair" if mode.kind == "circular" else "real pair"
+    return Symbol(kind, parts=(number_formula(mode.rate), number_formula(mode.frequency)))
+
+
+def _decimal(response: Response, mode: Mode, digits: int) -> str:
+    constants = {c.name: c for c in response.closed_forms.constants}
+
+    def shown(value: SurdSum | str) -> str:
+        if isinstance(value, str):
+            return constant_decimal(constants[value], digits)
+        return surd_decimal(value, digits)
+
+    if mode.kind == "real" or mode.frequency is None:
+        return shown(mode.rate)
+    rate = shown(mode.rate)
+    turn = shown(mode.frequency) + ("i" if mode.kind == "circular" else "")
+    return f"±{turn}" if rate == "0" else f"{rate} ± {turn}"
+
+
+def _field_name(response: Response) -> str:
+    radicands = response.field.radicands
+    return "Q" if not radicands else f"Q({', '.join(f'sqrt({d})' for d in radicands)})"
+
+
+def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
+    """Say what each named root is: one step for every factor that needs names."""
+    constants = {c.name: c for c in response.closed_forms.constants}
+    for factor, modes in zip(response.spectrum.factors, response.closed_forms.modes, strict=True):
+        names = [
+            name for mode in modes for name in (mode.rate, mode.frequency) if isinstance(name, str)
+        ]
+        if not names:
+            continue
+        surds = all(isinstance(constants[name].definition, Radical) for name in names)
+        polynomial = polynomial_formula(response.field, factor.p, LAMBDA)
+        statements = [Statement("polynomial", (polynomial, ZERO))]
+        even = factor.roots.form == "even"
+        if even and factor.roots.squares is not None:
+            statements = _even_statements(response, factor)
+        yield Step(
+            "named_roots",
+            tuple(statements) if not surds or even else (),
+            {
+                "even": even,
+                "surds": surds,
+                "degree": factor.degree,
+                "rows": [_row(constants[name], digits) for name in names],
+            },
+            rests_on=("eigenvalues",),
+        )
+
+
+def _even_statements(response: Response, factor: Factor) -> list[Statement]:
+    """The polynomial in mu = (lambda - a)^2."""
+    polynomial = polynomial_formula(response.field, factor.roots.squares, Name("mu"))
+    centre = response.field.surds(factor.roots.centre)
+    base: Expression = LAMBDA
+    if not centre.is_zero:
+        base = sum_of([LAMBDA, surd_formula(-centre)])
+    square = Power(base, number(2))
+    return [
+        Statement("substitution", (Name("mu"), square)),
+        Statement("polynomial", (polynomial, number(0))),
+    ]
+
+
+def _row(constant: NamedConstant, digits: int) -> dict[str, object]:
+    definition = constant.definition
+    row: dict[str, object] = {
+        "name": Name(constant.name),
+        "interval": None,
+        "definition": None,
+        "part": "",
+        "which": 0,
+        "decimal": constant_decimal(constant, digits),
+    }
+    if isinstance(definition, Radical):
+        row["definition"] = definition.formula
+    elif isinstance(definition, RootPart):
+        row["part"], row["which"] = definition.part, definition.which
+        row["interval"] = isolating_interval(definition)
+    return row
