@@ -15,7 +15,7 @@ from closedform.derivation.step import Matrix, Side, Statement, Symbol
 from closedform.document.box import EM_PER_LINE, RELATION, Box
 from closedform.document.breaking import filled, pieces
 from closedform.document.matrices import ZERO, matrix_box, matrix_height, with_front
-from closedform.document.symbols import side_box
+from closedform.document.symbols import ANY_ROW, side_box
 from closedform.notation.expression import Expression, Product
 
 __all__ = ["Display", "displayed", "displayed_together", "fits"]
@@ -196,12 +196,12 @@ def _stands_by_columns(name: Side, matrix: Matrix) -> bool:
     entries = [entry for row in matrix.rows for entry in row]
     if 2 * entries.count(ZERO) > len(entries):
         return False
-    return all(box.width <= EM_PER_LINE for _, box in _column_boxes(_entry(name), matrix))
+    return all(box.width <= EM_PER_LINE for _, box in _column_boxes(name, matrix))
 
 
-def _column_boxes(name: Symbol, matrix: Matrix) -> list[tuple[str, Box]]:
+def _column_boxes(name: Side, matrix: Matrix) -> list[tuple[str, Box]]:
     found = []
-    head = side_box(name).width + RELATION + 1.5
+    head = side_box(_entry(name, ANY_ROW, "99")).width + RELATION
     for j, column in enumerate(zip(*matrix.rows, strict=True), start=1):
         box = matrix_box(with_front(Matrix(tuple((entry,) for entry in column), matrix.front)))
         found.append((str(j), Box(box.latex, box.width + head)))
@@ -212,8 +212,8 @@ def _columns(name: Side, matrix: Matrix, relation: str) -> list[str]:
     """Return rows with as many columns in each as fit, each column with its name."""
     rows: list[str] = []
     used = EM_PER_LINE
-    for index, box in _column_boxes(_entry(name), matrix):
-        column = side_box(_entry(name, r"\cdot", index))
+    for index, box in _column_boxes(name, matrix):
+        column = side_box(_entry(name, ANY_ROW, index))
         text = f"{column.latex} {relation} {box.latex}"
         if used + 3.0 + box.width > EM_PER_LINE:
             rows.append(f"{MARK} {text}")

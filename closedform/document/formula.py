@@ -10,7 +10,7 @@ from __future__ import annotations
 from fractions import Fraction
 
 from closedform.document.box import BINARY, Box, Style, bracketed, joined, plain
-from closedform.document.names import IMAGINARY, is_long, name_box
+from closedform.document.names import is_long, name_box
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -244,7 +244,7 @@ def front_glue(before: Expression, after: Expression, left: Box, right: Box) -> 
     if isinstance(before, Name):
         if isinstance(after, Name) and not is_long(before.text) and not is_long(after.text):
             close = left.latex[-1].isalpha() and right.latex[0].isalpha()
-            return (" " if close or before.text == IMAGINARY else ""), 0.0
+            return (" " if close else ""), 0.0
         if right.latex.startswith("(") or is_long(before.text) or isinstance(after, Name):
             return r"\,", 0.17
     space = 0.2 if isinstance(before, Call) or isinstance(after, Call) else 0.0

@@ -41,7 +41,10 @@ from closedform.document.matrices import ZERO, matrix_box
 from closedform.document.names import letter_box, name_box, subscripted
 from closedform.notation.expression import Expression, Name, Negation, Number, Product, Sum
 
-__all__ = ["KINDS", "side_box", "symbol_box"]
+__all__ = ["ANY_ROW", "KINDS", "side_box", "symbol_box"]
+
+ANY_ROW = r"\cdot"
+"""The first index of an entry that stands for a whole column."""
 
 COMPOUND = frozenset({"pair", "real pair", "sum", "shifted"})
 LETTERS = frozenset({"matrix", "vector", "inverse", "transpose", "identity", "zero", "derivative"})
@@ -186,9 +189,12 @@ def _shifted(symbol: Symbol) -> Box:
 
 def _entry(symbol: Symbol) -> Box:
     body = side_box(symbol.parts[0])
-    comma = "," if any(len(index) > 1 for index in symbol.indices) else ""
+    # 1,12 could be read as 11,2 without the comma; the dot of a column cannot
+    row = symbol.indices[0]
+    comma = " " if row == ANY_ROW else "," if any(len(i) > 1 for i in symbol.indices) else ""
     index = comma.join(symbol.indices)
-    return Box(rf"\bigl({body.latex}\bigr)_{{{index}}}", body.width + 1.0 + 0.42 * len(index))
+    width = 0.42 * len(index.replace(ANY_ROW, ""))
+    return Box(rf"\bigl({body.latex}\bigr)_{{{index}}}", body.width + 1.0 + width)
 
 
 def _pair(symbol: Symbol) -> Box:

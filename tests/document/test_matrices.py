@@ -1,0 +1,56 @@
+from __future__ import annotations
+
+from closedform.derivation.step import Matrix
+from closedform.document.matrices import matrix_box, matrix_height, with_front
+from closedform.notation.expression import Product
+from tests.document.samples import T, add, column, exp, matrix, neg, prod, q
+
+
+def test_a_common_exponential_is_set_in_front() -> None:
+    e = exp(-2)
+    given = matrix((e, prod(T, e)), (0, neg(prod(3, e))))
+    assert with_front(given) == Matrix(((q(1), T), (q(0), neg(3))), e)
+
+
+def test_several_common_factors_are_set_in_front() -> None:
+    e = exp(-2)
+    given = matrix((prod("1/2", T, e), prod("1/2", "x", e)))
+    assert with_front(given) == Matrix(((T, q("x")),), Product((q("1/2"), e)))
+
+
+def test_common_denominators_are_set_in_front() -> None:
+    given = matrix(("2/3", "1/3"), ("-1/3", 1))
+    assert with_front(given) == Matrix(((q(2), q(1)), (q(-1), q(3))), q("1/3"))
+
+
+def test_what_is_not_shared_stays() -> None:
+    for given in (
+        matrix((exp(-1), exp(-2))),
+        matrix(("1/2", "1/3")),
+        matrix((prod(2, "x"), prod(2, "y"))),
+        matrix((add("a", "b"), prod("a", "c"))),
+        matrix((0, 0)),
+        column(exp(-1)),
+    ):
+        assert with_front(given) == given
+
+
+def test_a_given_front_stays() -> None:
+    given = Matrix(((exp(-1), exp(-1)),), q("c"))
+    assert with_front(given) == given
+    assert matrix_box(given).latex.startswith(r"c\begin{bmatrix}")
+
+
+def test_a_sum_in_front_is_bracketed() -> None:
+    given = Matrix(((q(1),),), add("a", "b"))
+    assert matrix_box(given).latex.startswith(r"(a + b)\begin{bmatrix}")
+
+
+def test_tight_columns_are_nearer() -> None:
+    given = matrix(tuple(range(9)))
+    assert matrix_box(given, tight=True).width < matrix_box(given).width - 3
+
+
+def test_rows_with_fractions_are_higher() -> None:
+    assert matrix_height(column("1/2", "1/3")) > matrix_height(column(1, 2))
+    assert r"\\[3pt]" in matrix_box(column("1/2", "1/3")).latex
