@@ -12,6 +12,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
+from fractions import Fraction
 from functools import cached_property, reduce
 from math import comb, gcd, lcm
 from operator import add
@@ -211,7 +212,8 @@ def _quotient_of_matrix(matrix: FieldMatrix, p: Polynomial, vector: RootMatrix) 
 def _scales(chain: JordanChain) -> Iterator[Polynomial]:
     """Yield factors in L that turn one entry of the eigenvector into 1, if L is small."""
     p, eigenvector = chain.factor.p, chain.vectors[0]
-    if chain.factor.degree > 2:
+    rational = chain.factor.degree == 1 and not eigenvector.field.radicands
+    if chain.factor.degree > 2 or rational:  # a rational scale is found by `_primitive`
         return
     for i in range(eigenvector.shape[0]):
         entry = eigenvector.entry(i, 0)
@@ -230,22 +232,22 @@ def _scaled(chain: JordanChain, scale: Polynomial) -> JordanChain:
 def _primitive(chain: JordanChain) -> JordanChain:
     """Scale by a rational number: whole coefficients without common factor, most of them > 0."""
     field = chain.vectors[0].field
-    numbers = [
-        coefficient
+    parts = [
+        part
         for vector in chain.vectors
         for matrix in vector.coefficients
         for row in matrix.to_list()
         for element in row
-        if element
-        for _, coefficient in field.surds(element).terms
+        for part in field.rational_parts(element)
     ]
-    content = gcd(*(c.numerator for c in numbers))
-    denominator = lcm(*(c.denominator for c in numbers))
-    negative = sum(c < 0 for c in numbers)
-    turn = 2 * negative > len(numbers) or (2 * negative == len(numbers) and numbers[0] < 0)
-    scale = field.polynomial([field.scalar(-denominator if turn else denominator)])
-    scale = scale.quo_ground(field.scalar(content))
-    return _scaled(chain, scale)
+    content = gcd(*(n for n, _, _ in parts))
+    denominator = lcm(*(d for _, d, _ in parts))
+    negative = sum(n < 0 for n, _, _ in parts)
+    turn = 2 * negative > len(parts) or (2 * negative == len(parts) and parts[0][0] < 0)
+    if content == denominator == 1 and not turn:
+        return chain
+    scale = Fraction(-denominator if turn else denominator, content)
+    return _scaled(chain, field.polynomial([field.scalar(scale)]))
 
 
 def _shortest(chains: Iterator[JordanChain] | Sequence[JordanChain]) -> JordanChain:
@@ -266,8 +268,8 @@ def _chain_weight(chain: JordanChain) -> int:
 def _digits(field: BaseField, element: Scalar) -> int:
     """Count the characters that a scalar takes when printed, roughly."""
     return sum(
-        len(str(abs(c.numerator))) + 2 * (c.denominator != 1) + 2 * (d != 1) + (c < 0)
-        for d, c in field.surds(element).terms
+        len(str(abs(n))) + 2 * (d != 1) + 2 * (radicand != 1) + (n < 0)
+        for n, d, radicand in field.rational_parts(element)
     )
 
 

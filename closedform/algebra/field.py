@@ -85,6 +85,13 @@ class BaseField:
             total += power * SurdSum.rational(rational(coefficient))
         return total
 
+    def rational_parts(self, element: Scalar) -> list[tuple[int, int, int]]:
+        """Return (numerator, denominator, radicand) for every term of an element."""
+        if not self.radicands:
+            numerator = int(element.numerator)
+            return [(numerator, int(element.denominator), 1)] if numerator else []
+        return [(c.numerator, c.denominator, d) for d, c in self.surds(element).terms]
+
     def enclose(self, element: Scalar) -> arb:
         """Return a ball that holds the element, at FLINT's current precision."""
         return ball_of(self.surds(element))

@@ -106,7 +106,8 @@ def operations(expression: Expression) -> int:
     """Count the operations a reader sees: + - * / ^, signs, and function calls.
 
     A fraction p/q of two integers counts one division.  ``a - b`` counts one
-    subtraction (the sign of a later term is part of it); a leading sign counts one.
+    subtraction (the sign of a later term is part of it); a leading sign counts one,
+    unless a number follows, whose sign it is: ``-3*t`` is one multiplication.
     """
     match expression:
         case Number(value):
@@ -114,7 +115,7 @@ def operations(expression: Expression) -> int:
         case Name():
             return 0
         case Negation(operand):
-            return 1 + operations(operand)
+            return operations(operand) + (not _starts_with_number(operand))
         case Sum(terms):
             inside = sum(
                 operations(term.operand if isinstance(term, Negation) and i else term)
@@ -127,3 +128,14 @@ def operations(expression: Expression) -> int:
             return 1 + operations(above) + operations(below)
         case Call(_, argument):
             return 1 + operations(argument)
+
+
+def _starts_with_number(expression: Expression) -> bool:
+    match expression:
+        case Number():
+            return True
+        case Product(factors):
+            return _starts_with_number(factors[0])
+        case Quotient(above, _):
+            return _starts_with_number(above)
+    return False
