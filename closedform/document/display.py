@@ -24,6 +24,12 @@ WIDEST_LEFT_SIDE = 12.0
 """A left side up to this width, in em, keeps the lines below it indented past it."""
 
 TALLEST_COLUMN = 40.0
+TALLEST_MATRIX = 56.0
+"""In em; the text of a page is 64 em high."""
+
+KEPT_TOGETHER = 6
+"""Rows of one formula up to this number stay on one page."""
+
 AS_GIVEN = frozenset({"matrix", "initial"})
 """Statements of what the user gave: their matrices keep their entries as they are."""
 
@@ -104,7 +110,8 @@ def _laid_out(statement: Statement, by: str) -> _Layout:
     for i, matrix in enumerate(sides):
         if not isinstance(matrix, Matrix):
             continue
-        if by == "auto" and matrix_box(matrix, tight=True).width <= room:
+        low = matrix_height(matrix) <= TALLEST_MATRIX
+        if by == "auto" and low and matrix_box(matrix, tight=True).width <= room:
             continue
         others = sides[:i] + sides[i + 1 :]
         if not others or isinstance(others[0], Matrix):
@@ -137,12 +144,25 @@ def _aligned(rows: list[str], labels: list[str]) -> str:
     """Return the rows in align; `MARK` is where they are aligned."""
     star = "" if any(labels) else "*"
     lines: list[str] = []
-    for row, label in zip(rows, labels, strict=True):
+    ends = _row_ends(rows)
+    for row, label, end in zip(rows, labels, ends, strict=True):
         marked = row.replace(MARK, "&") if MARK in row else f"& {row}"
         tag = rf"\label{{{label}}}" if label else r" \notag"
-        end = "" if len(lines) == len(rows) - 1 else r" \\[4pt]" if APART in row else r" \\"
         lines.append(f"  {marked.replace(APART, '')}{'' if star else tag}{end}")
     return f"\\begin{{align{star}}}\n" + "\n".join(lines) + f"\n\\end{{align{star}}}"
+
+
+def _row_ends(rows: list[str]) -> list[str]:
+    r"""Return what ends each row: \\* forbids a page break there."""
+    ends: list[str] = []
+    begin = 0
+    for i, row in enumerate(rows):
+        if APART in row or i == len(rows) - 1:
+            size = i + 1 - begin
+            ends += [r" \\*" if size <= KEPT_TOGETHER else r" \\"] * (size - 1)
+            ends.append(r" \\[4pt]" if i < len(rows) - 1 else "")
+            begin = i + 1
+    return ends
 
 
 def _matrix_aware(side: Side, room: float) -> list[Box]:
@@ -196,31 +216,37 @@ def _stands_by_columns(name: Side, matrix: Matrix) -> bool:
     entries = [entry for row in matrix.rows for entry in row]
     if 2 * entries.count(ZERO) > len(entries):
         return False
-    return all(box.width <= EM_PER_LINE for _, box in _column_boxes(name, matrix))
+    return all(
+        _block_width(name, matrix, j, j + 1) <= EM_PER_LINE for j in range(len(matrix.rows[0]))
+    )
 
 
-def _column_boxes(name: Side, matrix: Matrix) -> list[tuple[str, Box]]:
-    found = []
-    head = side_box(_entry(name, ANY_ROW, "99")).width + RELATION
-    for j, column in enumerate(zip(*matrix.rows, strict=True), start=1):
-        box = matrix_box(with_front(Matrix(tuple((entry,) for entry in column), matrix.front)))
-        found.append((str(j), Box(box.latex, box.width + head)))
-    return found
+def _block(matrix: Matrix, begin: int, end: int) -> Matrix:
+    return with_front(Matrix(tuple(row[begin:end] for row in matrix.rows), matrix.front))
+
+
+def _block_name(name: Side, begin: int, end: int) -> Symbol:
+    columns = str(end) if end == begin + 1 else rf"{begin + 1}\ldots {end}"
+    return _entry(name, ANY_ROW, columns)
+
+
+def _block_width(name: Side, matrix: Matrix, begin: int, end: int) -> float:
+    label = side_box(_block_name(name, begin, end)).width
+    return label + RELATION + matrix_box(_block(matrix, begin, end)).width
 
 
 def _columns(name: Side, matrix: Matrix, relation: str) -> list[str]:
-    """Return rows with as many columns in each as fit, each column with its name."""
+    """Return rows with as many neighbouring columns in each as fit."""
     rows: list[str] = []
-    used = EM_PER_LINE
-    for index, box in _column_boxes(name, matrix):
-        column = side_box(_entry(name, ANY_ROW, index))
-        text = f"{column.latex} {relation} {box.latex}"
-        if used + 3.0 + box.width > EM_PER_LINE:
-            rows.append(f"{MARK} {text}")
-            used = box.width
-        else:
-            rows[-1] += rf",\qquad {text}"
-            used += 3.0 + box.width
+    begin, count = 0, len(matrix.rows[0])
+    while begin < count:
+        end = begin + 1
+        while end < count and _block_width(name, matrix, begin, end + 1) <= EM_PER_LINE:
+            end += 1
+        label = side_box(_block_name(name, begin, end)).latex
+        block = matrix_box(_block(matrix, begin, end)).latex
+        rows.append(f"{label} {MARK}{relation} {block}{APART}")
+        begin = end
     return rows
 
 
@@ -233,12 +259,13 @@ def _entries(name: Side, matrix: Matrix, relation: str) -> tuple[list[str], bool
             indices = (str(i),) if single else (str(i), str(j))
             places.setdefault(entry, []).append(_entry(name, *indices))
     zeros = places.pop(ZERO, None) is not None
-    rows: list[str] = []
+    chains: list[list[str]] = []
     for entry, names in places.items():
         value = entry if matrix.front is None else Product((matrix.front, entry))
         room = EM_PER_LINE - side_box(names[0]).width - RELATION
         chain = _chain((*names, value), relation, room)
         if len(chain) == 1:
             chain = [chain[0].replace(f" {relation} ", f" {MARK}{relation} ", 1)]
-        rows += [*chain[:-1], chain[-1] + APART]
-    return rows, zeros
+        chains.append(chain)
+    apart = APART if any(len(chain) > 1 for chain in chains) else ""
+    return [row for chain in chains for row in [*chain[:-1], chain[-1] + apart]], zeros

@@ -57,11 +57,6 @@ def pair(real: str, frequency: str) -> Symbol:
     return Symbol("pair", parts=(middle, Name(frequency)))
 
 
-def dot_index() -> str:
-    """Return the index of a column as it is printed."""
-    return r"$\cdot\,j$"
-
-
 def relate(*sides: Side) -> str:
     """Return sides joined by equals signs within a line of text."""
     return inline(Statement("", sides))
@@ -107,5 +102,4 @@ FUNCTIONS: dict[str, Callable[..., Any]] = {
     "exponential": exponential,
     "power": power,
     "pair": pair,
-    "dot_index": dot_index,
 }

@@ -193,7 +193,7 @@ def _entry(symbol: Symbol) -> Box:
     row = symbol.indices[0]
     comma = " " if row == ANY_ROW else "," if any(len(i) > 1 for i in symbol.indices) else ""
     index = comma.join(symbol.indices)
-    width = 0.42 * len(index.replace(ANY_ROW, ""))
+    width = 0.42 * len(index.replace(ANY_ROW, "").replace(r"\ldots ", "..."))
     return Box(rf"\bigl({body.latex}\bigr)_{{{index}}}", body.width + 1.0 + width)
 
 

@@ -704,7 +704,49 @@ def ten_named() -> Derivation:
     )
 
 
+def many_states() -> Derivation:
+    """Forty-two states: matrices taller than a page and wider than the line, mostly zero."""
+    n = 42
+    chain = matrix(
+        *(tuple(-2 if i == j else "1/3" if i == j + 1 else 0 for j in range(n)) for i in range(n))
+    )
+    full = matrix(*(tuple((i * j) % 9 - 4 for j in range(24)) for i in range(24)))
+    names = tuple(f"x_{i}" for i in range(1, n + 1))
+    return Derivation(
+        "A cascade",
+        (
+            model("", names, chain, column(*range(n))),
+            Step(
+                "jordan_form",
+                (
+                    says("P", P, full),
+                    says("J", J, chain),
+                    says(
+                        "P inverse", P_INVERSE, matrix(*((f"{k}/7",) * 24 for k in range(90, 114)))
+                    ),
+                ),
+            ),
+            Step(
+                "solution",
+                (
+                    says(
+                        "solution", vector("x", t=T), column(*(prod(k, exp(-k)) for k in range(n)))
+                    ),
+                ),
+            ),
+            Step(
+                "outputs",
+                (
+                    says("output", scalar("y", t=T), add(*names, *names)),
+                    says("output", scalar("z", t=T), q(-1)),
+                ),
+            ),
+        ),
+    )
+
+
 SAMPLES = {
+    "many states": many_states,
     "two real": two_real,
     "oscillator": oscillator,
     "defective": defective,

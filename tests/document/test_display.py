@@ -103,7 +103,9 @@ def test_a_wide_matrix_of_short_columns_is_set_by_column() -> None:
     entry = add("alpha", prod(3, root(2)), "beta", "gamma")
     shown = displayed(says("P", P, matrix(*((entry,) * 6 for _ in range(6)))), label="eq:P")
     assert shown.form == "columns"
-    assert all(rf"\bigl(\boldsymbol{{P}}\bigr)_{{\cdot {j}}} =" in shown.latex for j in range(1, 7))
+    name = r"\bigl(\boldsymbol{P}\bigr)"
+    assert rf"{name}_{{\cdot 1\ldots 3}} &= " in shown.latex
+    assert rf"{name}_{{\cdot 4\ldots 6}} &= " in shown.latex
     assert shown.latex.count(r"\label{eq:P}") == 1
 
 
@@ -143,7 +145,7 @@ def test_a_wide_vector_is_set_by_entry() -> None:
 def test_several_short_statements_share_a_display() -> None:
     shown = displayed_together([says("", q("a"), q(1)), says("", q("b"), q(2))], ["", "eq:b"])
     assert [str(one) for one in shown] == [
-        "\\begin{align}\n  a &= 1 \\notag \\\\\n  b &= 2\\label{eq:b}\n\\end{align}"
+        "\\begin{align}\n  a &= 1 \\notag \\\\*\n  b &= 2\\label{eq:b}\n\\end{align}"
     ]
 
 
@@ -165,3 +167,15 @@ def test_a_wide_matrix_without_a_name_is_refused() -> None:
 def test_a_long_exponent_is_left_whole() -> None:
     latex = displayed(says("", q("y"), add(Call("exp", wide_terms(1, 4)), 1))).latex
     assert latex.count(r"\mathrm{e}^{\frac") + latex.count(r"\mathrm{e}^{79") == 1
+
+
+def test_a_matrix_taller_than_the_page_is_set_by_entry() -> None:
+    assert displayed(says("v", V, column(*range(50)))).form == "entries"
+    assert fits(says("v", V, column(*range(30))))
+
+
+def test_a_short_formula_is_kept_on_one_page_and_a_long_one_is_not() -> None:
+    short = displayed(says("", q("y"), wide_terms(1, 14))).latex
+    long = displayed(says("", q("y"), wide_terms(1, 80))).latex
+    assert short.count(r"\\*") == short.count(r"\\") > 0
+    assert r"\\*" not in long
