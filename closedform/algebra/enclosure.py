@@ -13,6 +13,7 @@ from closedform.algebra.surds import SurdSum
 __all__ = [
     "ball_of",
     "certified_decimal",
+    "certified_decimals",
     "enclosed_to",
     "exact_decimal",
 ]
@@ -43,19 +44,23 @@ def enclosed_to(evaluate: Callable[[], arb_mat], digits: int) -> arb_mat:
 
 
 def certified_decimal(evaluate: Callable[[], arb], digits: int) -> str:
-    """Return an irrational number correctly rounded to `digits` significant digits.
+    """Return one number as `certified_decimals` does."""
+    return certified_decimals(lambda: [evaluate()], digits)[0]
 
-    `evaluate` encloses it at FLINT's current precision.  A number that is still not told
-    from zero at 2^16 bits is given as 0.
+
+def certified_decimals(evaluate: Callable[[], list[arb]], digits: int) -> list[str]:
+    """Return irrational numbers correctly rounded to `digits` significant digits.
+
+    `evaluate` encloses them at FLINT's current precision, which grows until all are
+    settled.  A number that is still not told from zero at 2^16 bits is given as 0.
     """
     bits = 64 + 4 * digits
-    while bits <= _MOST_BITS:
+    while True:
         with ctx.workprec(bits):
-            found = _settled(evaluate(), digits)
-        if found is not None:
-            return found
+            found = [_settled(ball, digits) for ball in evaluate()]
+        if None not in found or bits >= _MOST_BITS:
+            return [text or "0" for text in found]
         bits *= 2
-    return "0"
 
 
 def exact_decimal(value: Fraction, digits: int) -> str:

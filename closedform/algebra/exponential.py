@@ -97,7 +97,7 @@ class ExponentialMatrix:
                 weights = _trace_weights(term.factor, t, power)
                 for weight, matrix in zip(weights, residue.coefficients, strict=True):
                     if not matrix.is_zero_matrix:
-                        total = total + _ball_matrix(self.field, matrix) * weight
+                        total = total + self.field.enclose_matrix(matrix) * weight
         return total
 
 
@@ -215,8 +215,3 @@ def _horner(coefficients: list[arb], z: acb) -> acb:
     for c in coefficients:
         value = value * z + c
     return value
-
-
-def _ball_matrix(field: BaseField, matrix: FieldMatrix) -> arb_mat:
-    rows, columns = matrix.shape
-    return arb_mat(rows, columns, [field.enclose(c) for row in matrix.to_list() for c in row])

@@ -14,7 +14,7 @@ from itertools import combinations
 from math import prod
 from typing import Any
 
-from flint import arb, ctx
+from flint import arb, arb_mat, ctx, fmpq
 from sympy import Integer, sqrt
 from sympy.polys.densebasic import dup_strip
 from sympy.polys.domains import QQ
@@ -94,7 +94,14 @@ class BaseField:
 
     def enclose(self, element: Scalar) -> arb:
         """Return a ball that holds the element, at FLINT's current precision."""
+        if isinstance(element, fmpq):
+            return arb(element)
         return ball_of(self.surds(element))
+
+    def enclose_matrix(self, matrix: FieldMatrix) -> arb_mat:
+        """Return balls that hold the entries, at FLINT's current precision."""
+        rows, columns = matrix.shape
+        return arb_mat(rows, columns, [self.enclose(e) for row in matrix.to_list() for e in row])
 
     def sign(self, element: Scalar) -> int:
         """Return -1, 0 or 1: zero is decided in the field, the sign by refined enclosures."""

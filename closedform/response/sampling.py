@@ -7,7 +7,12 @@ from fractions import Fraction
 
 from flint import arb, ctx
 
-from closedform.algebra.enclosure import ball_of, certified_decimal, exact_decimal
+from closedform.algebra.enclosure import (
+    ball_of,
+    certified_decimal,
+    certified_decimals,
+    exact_decimal,
+)
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.roots import enclosed_roots
 from closedform.algebra.surds import SurdSum
@@ -29,7 +34,7 @@ def sampled(
     Shapes:  `function` is n x 1; the result has len(times) rows of n decimals, each
     rounded to `digits` significant digits (fewer where the value is exact with fewer).
     """
-    return [[_value(function, row, t, digits) for row in range(function.shape[0])] for t in times]
+    return [_column(function, t, digits) for t in times]
 
 
 def constant_decimal(constant: NamedConstant, digits: int) -> str:
@@ -107,12 +112,17 @@ def _round_number(value: Fraction) -> Fraction:
     return max(power * k for k in (1, 2, 5) if power * k <= value)
 
 
-def _value(function: ExponentialMatrix, row: int, t: SurdSum, digits: int) -> str:
-    exact = function.exact_entry(row, 0, t)
-    if exact is not None:
-        return surd_decimal(exact, digits)
+def _column(function: ExponentialMatrix, t: SurdSum, digits: int) -> list[str]:
+    rows = range(function.shape[0])
+    exact = [function.exact_entry(row, 0, t) for row in rows]
+    open_rows = [row for row in rows if exact[row] is None]
 
-    def ball() -> arb:
-        return function.enclosure(ball_of(t))[row, 0]
+    def balls() -> list[arb]:
+        column = function.enclosure(ball_of(t))
+        return [column[row, 0] for row in open_rows]
 
-    return certified_decimal(ball, digits)
+    texts = dict(zip(open_rows, certified_decimals(balls, digits), strict=True))
+    return [
+        texts[row] if value is None else surd_decimal(value, digits)
+        for row, value in enumerate(exact)
+    ]

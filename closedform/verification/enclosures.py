@@ -6,7 +6,7 @@ back, is compared with the matrix exponential of ball arithmetic and with mpmath
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 from fractions import Fraction
 from typing import Any
 
@@ -20,39 +20,58 @@ from closedform.response.names import constant_values
 from closedform.response.response import Response
 from closedform.verification.record import Check
 
-__all__ = ["ball_check", "determinant_ball_check", "formula_check", "mpmath_check", "trial_times"]
+__all__ = [
+    "ball_check",
+    "ball_exponentials",
+    "determinant_ball_check",
+    "formula_check",
+    "mpmath_check",
+    "trial_times",
+]
 
 DIGITS = 30
+References = dict[Fraction, arb_mat]
+"""The exponential of ball arithmetic at each instant of comparison."""
 LARGEST_FOR_MPMATH = 12
 
 
 def trial_times(response: Response) -> tuple[Fraction, ...]:
-    """Return three instants, short to long against the size of A."""
-    largest = max(
-        sum((abs(response.field.enclose(e)) for e in row), arb(0)).upper()
+    """Return three instants, short to long: 1/3, 1 and 7 times a power of 2 near 1/norm(A)."""
+    sums = [
+        sum((abs(response.field.enclose(e)) for e in row), arb(0))
         for row in response.matrix.to_list()
-    )
-    unit = Fraction(1)
-    while unit * 2 < Fraction(10**6) and arb(int(unit * 2)) * largest < 1 and largest > 0:
-        unit *= 2
-    while arb(1) / arb(unit.denominator) * largest > 2 and unit <= 1:
-        unit /= 2
+    ]
+    mantissa, exponent = max(row.mid() for row in sums).man_exp()
+    order = int(mantissa).bit_length() + int(exponent) if mantissa else 0
+    unit = Fraction(2) ** -order
     return (unit / 3, unit, unit * 7)
 
 
-def ball_check(response: Response, times: tuple[Fraction, ...]) -> Check:
+def ball_exponentials(response: Response, times: tuple[Fraction, ...]) -> References:
+    """Return e^(At) at each instant by the scaling and Taylor series of acb_mat."""
+    return {t: _ball_exponential(response, t) for t in times}
+
+
+def _ball_exponential(response: Response, t: Fraction) -> arb_mat:
+    def evaluate() -> arb_mat:
+        scaled = response.field.enclose_matrix(response.matrix) * ball_of(t)
+        value = acb_mat(scaled).exp()
+        return arb_mat(value.nrows(), value.ncols(), [e.real for e in value.entries()])
+
+    return enclosed_to(evaluate, DIGITS + 5)
+
+
+def ball_check(response: Response, references: References) -> Check:
     """e^(At) evaluated from its exact form, against the exponential of ball arithmetic."""
     item = "e^(At), numbers"
-    for t in times:
-        ours = _own_exponential(response, t)
-        other = _ball_exponential(response, t)
-        fault = _first_apart(ours, other)
+    for t, other in references.items():
+        fault = _first_apart(_own_exponential(response, t), other)
         if fault is not None:
             return Check(item, "refuted", f"entry {fault} differs at t = {t}")
-    return Check(item, "enclosed", _agreed(times, "the matrix exponential of ball arithmetic"))
+    return Check(item, "enclosed", _agreed(references, "the matrix exponential of ball arithmetic"))
 
 
-def formula_check(response: Response, times: tuple[Fraction, ...]) -> Check:
+def formula_check(response: Response, references: References) -> Check:
     """Every formula as written, read back from plain notation, against ball arithmetic."""
     item = "formulas as written"
     forms = response.closed_forms
@@ -60,9 +79,8 @@ def formula_check(response: Response, times: tuple[Fraction, ...]) -> Check:
     parsed = {
         place: read_formula(plain(formula), names=names) for place, formula in _written(response)
     }
-    for t in times:
+    for t, transition in references.items():
         with ctx.workprec(64 + 5 * DIGITS):
-            transition = _ball_exponential(response, t)
             expected = _expected(response, transition)
             values = {**constant_values(forms.constants), response.model.time: ball_of(t)}
             for place, formula in parsed.items():
@@ -75,7 +93,7 @@ def formula_check(response: Response, times: tuple[Fraction, ...]) -> Check:
         item,
         "enclosed",
         f"{len(parsed)} formulas were read back from their text; "
-        + _agreed(times, "the matrix exponential of ball arithmetic"),
+        + _agreed(references, "the matrix exponential of ball arithmetic"),
     )
 
 
@@ -108,7 +126,7 @@ def mpmath_check(response: Response, times: tuple[Fraction, ...]) -> Check:
     for t in times:
         ours = _own_exponential(response, t)
         with ctx.workprec(8 * DIGITS):
-            scaled = _ball_matrix(response) * ball_of(t)
+            scaled = response.field.enclose_matrix(response.matrix) * ball_of(t)
             entries = [mp.mpf(e.mid().str(3 * DIGITS, radius=False)) for e in scaled.entries()]
         theirs = mp.expm(mp.matrix(n, n) + mp.matrix(_rows(entries, n)), method="taylor")
         size = max(1, *(abs(e) for e in theirs))
@@ -120,24 +138,8 @@ def mpmath_check(response: Response, times: tuple[Fraction, ...]) -> Check:
     return Check(item, "enclosed", _agreed(times, "mpmath's matrix exponential"))
 
 
-def _ball_matrix(response: Response) -> arb_mat:
-    n = response.matrix.shape[0]
-    entries = [response.field.enclose(e) for row in response.matrix.to_list() for e in row]
-    return arb_mat(n, n, entries)
-
-
 def _own_exponential(response: Response, t: Fraction) -> arb_mat:
     return enclosed_to(lambda: response.exponential.enclosure(ball_of(t)), DIGITS + 5)
-
-
-def _ball_exponential(response: Response, t: Fraction) -> arb_mat:
-    """e^(At) by the scaling and Taylor series of acb_mat, as a real matrix."""
-
-    def evaluate() -> arb_mat:
-        value = acb_mat(_ball_matrix(response) * ball_of(t)).exp()
-        return arb_mat(value.nrows(), value.ncols(), [e.real for e in value.entries()])
-
-    return enclosed_to(evaluate, DIGITS + 5)
 
 
 def _written(response: Response) -> Iterator[tuple[str, Expression]]:
@@ -191,9 +193,9 @@ def _rows(entries: list[Any], n: int) -> list[list[Any]]:
     return [entries[i * n : (i + 1) * n] for i in range(n)]
 
 
-def _agreed(times: tuple[Fraction, ...], other: str) -> str:
+def _agreed(times: Iterable[Fraction], other: str) -> str:
     return f"agree with {other} to {DIGITS} digits at t = {_listed(times)}"
 
 
-def _listed(times: tuple[Fraction, ...]) -> str:
+def _listed(times: Iterable[Fraction]) -> str:
     return ", ".join(map(str, times))

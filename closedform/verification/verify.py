@@ -5,6 +5,7 @@ from __future__ import annotations
 from closedform.response.response import Response
 from closedform.verification.enclosures import (
     ball_check,
+    ball_exponentials,
     determinant_ball_check,
     formula_check,
     mpmath_check,
@@ -45,11 +46,12 @@ def prove(response: Response) -> tuple[Check, ...]:
 def verify(response: Response) -> VerificationRecord:
     """Return the whole record: the exact identities, then the certified comparisons."""
     times = trial_times(response)
+    references = ball_exponentials(response, times)
     return VerificationRecord(
         (
             *prove(response),
-            ball_check(response, times),
-            formula_check(response, times),
+            ball_check(response, references),
+            formula_check(response, references),
             determinant_ball_check(response, times),
             mpmath_check(response, times),
         )
