@@ -22,6 +22,7 @@ from closedform.derivation.formulas import (
     complex_formula,
     eigenvalue_formula,
     frequency_formula,
+    in_order,
 )
 from closedform.derivation.spectrum_steps import Eigenvalue, eigenvalues_of
 from closedform.derivation.step import Matrix, Statement, Step, Symbol
@@ -34,8 +35,9 @@ from closedform.notation.expression import (
     Power,
     number,
 )
-from closedform.response.amounts import negated, opened, sum_of, surd_formula, weighted
+from closedform.response.amounts import negated, surd_formula, weighted
 from closedform.response.closed_form import exponential_of_rate
+from closedform.response.modes import Mode
 from closedform.response.response import Response
 
 __all__ = ["canonical_steps", "has_canonical_steps"]
@@ -181,13 +183,13 @@ def _entry_formula(block: _Block, entry: Entry, sign: int) -> Expression:
     mode = block.eigenvalue.mode
     turn = y if sign > 0 else -y
     if mode.kind == "circular":
-        return complex_formula(x, turn, mode.frequency)
+        return complex_formula(x, turn, mode)
     if isinstance(mode.frequency, SurdSum):
         return surd_formula(x + turn * mode.frequency)
     parts = [] if x.is_zero else [surd_formula(x)]
     if not turn.is_zero:
-        parts.append(frequency_formula(turn, mode.frequency))
-    return opened(sum_of(parts))
+        parts.append(frequency_formula(turn, mode))
+    return in_order(parts)
 
 
 def _jordan_step(response: Response, blocks: Sequence[_Block]) -> Step:
@@ -261,12 +263,16 @@ def _real_form_step(blocks: Sequence[_Block]) -> Step:
 
 def _real_columns(block: _Block) -> list[list[Expression]]:
     """Re v and Im v of every vector of the chain."""
-    frequency = block.eigenvalue.mode.frequency
+    mode = block.eigenvalue.mode
     columns = []
     for vector in block.vectors:
         columns.append([surd_formula(x) for x, _ in vector])
-        columns.append([frequency_formula(y, frequency) for _, y in vector])
+        columns.append([_turned(y, mode) for _, y in vector])
     return columns
+
+
+def _turned(value: SurdSum, mode: Mode) -> Expression:
+    return ZERO if value.is_zero else frequency_formula(value, mode)
 
 
 def _real_rows(block: _Block) -> list[list[Expression]]:
@@ -274,11 +280,11 @@ def _real_rows(block: _Block) -> list[list[Expression]]:
 
     With w = x + y sqrt(D) over L, the imaginary part of a left vector is y times omega.
     """
-    frequency = block.eigenvalue.mode.frequency
+    mode = block.eigenvalue.mode
     rows = []
     for row in block.left:
         rows.append([surd_formula(x + x) for x, _ in row])
-        rows.append([frequency_formula(-(y + y), frequency) for _, y in row])
+        rows.append([_turned(-(y + y), mode) for _, y in row])
     return rows
 
 
@@ -287,7 +293,7 @@ def _real_form_rows(block: _Block) -> Rows:
     if mode.frequency is None or isinstance(mode.rate, str):
         raise TypeError("a pair of degree two has a rate and a frequency")
     rate = surd_formula(mode.rate)
-    turn = frequency_formula(_UNIT, mode.frequency)
+    turn = frequency_formula(_UNIT, mode)
     cell = ((rate, turn), (negated(turn), rate))
     cells = {0: cell, 1: ((ONE, ZERO), (ZERO, ONE))}
     return _expanded(block.size, cells.get)
@@ -345,10 +351,7 @@ def _chain_entry(step: int, factors: Sequence[Expression], time: str) -> Express
 
 def _rotation(block: _Block, step: int, time: str) -> Cell:
     mode = block.eigenvalue.mode
-    turn = frequency_formula(_UNIT, mode.frequency)
-    angle = weighted(_UNIT, [turn, Name(time)], []) if turn != ONE else Name(time)
-    if isinstance(mode.frequency, SurdSum):
-        angle = weighted(mode.frequency, [Name(time)], [])
+    angle = frequency_formula(_UNIT, mode, [Name(time)])
     exponential = exponential_of_rate(mode.rate, time)
     front = [] if exponential is None else [exponential]
     cosine = _chain_entry(step, [*front, Call("cos", angle)], time)

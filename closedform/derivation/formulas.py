@@ -8,8 +8,8 @@ from fractions import Fraction
 from closedform.algebra.field import BaseField, Polynomial
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
-from closedform.notation.expression import Expression, Name, Number, Power, Sum
-from closedform.response.amounts import opened, sum_of, surd_formula, weighted
+from closedform.notation.expression import Expression, Name, Number, Power, Sum, operations
+from closedform.response.amounts import sum_of, surd_formula, weighted
 from closedform.response.modes import Mode
 
 __all__ = [
@@ -23,6 +23,7 @@ __all__ = [
     "eigenvalue_formula",
     "eigenvalue_symbol",
     "frequency_formula",
+    "in_order",
     "number_formula",
     "polynomial_formula",
     "surd_matrix",
@@ -47,11 +48,11 @@ def polynomial_formula(field: BaseField, polynomial: Polynomial, variable: Name)
         value = field.surds(element)
         if not value.is_zero:
             terms.append(weighted(value, _power(variable, power), []))
-    return opened(_in_order(terms))
+    return in_order(terms)
 
 
-def _in_order(terms: Sequence[Expression]) -> Expression:
-    """A polynomial keeps its order of powers, whatever the signs."""
+def in_order(terms: Sequence[Expression]) -> Expression:
+    """Return the sum of terms that keep their order, whatever the signs."""
     if len(terms) > 1:
         return Sum(tuple(terms))
     return sum_of(terms)
@@ -63,24 +64,29 @@ def _power(variable: Name, power: int) -> list[Expression]:
     return [variable if power == 1 else Power(variable, Number(Fraction(power)))]
 
 
-def frequency_formula(value: SurdSum, frequency: SurdSum | str | None) -> Expression:
-    """Return value · frequency as a formula."""
-    if value.is_zero:
-        return ZERO
-    if isinstance(frequency, SurdSum):
-        return surd_formula(value * frequency)
-    return weighted(value, [Name(frequency)] if frequency else [], [])
+def frequency_formula(value: SurdSum, mode: Mode, unit: Sequence[Expression] = ()) -> Expression:
+    """Return value · frequency · unit as a formula, for a value that is not zero.
+
+    A named frequency w may also divide, as value · w^2/w, where that is shorter.
+    """
+    if isinstance(mode.frequency, SurdSum):
+        return weighted(value * mode.frequency, unit, [])
+    name = Name(str(mode.frequency))
+    above = weighted(value, [name, *unit], [])
+    if mode.factor.degree != 2:
+        return above
+    field, roots = mode.factor.roots.field, mode.factor.roots
+    square = field.surds(-roots.discriminant if mode.kind == "circular" else roots.discriminant)
+    below = weighted(value * square, unit, [name])
+    return below if operations(below) < operations(above) else above
 
 
-def complex_formula(real: SurdSum, turn: SurdSum, frequency: SurdSum | str | None) -> Expression:
-    """Return real + i · turn · frequency as a formula."""
+def complex_formula(real: SurdSum, turn: SurdSum, mode: Mode) -> Expression:
+    """Return real + i · turn · frequency as a formula, the real part first."""
     terms = [] if real.is_zero else [surd_formula(real)]
     if not turn.is_zero:
-        if isinstance(frequency, SurdSum):
-            terms.append(weighted(turn * frequency, [IMAGINARY_UNIT], []))
-        else:
-            terms.append(weighted(turn, [Name(str(frequency)), IMAGINARY_UNIT], []))
-    return opened(sum_of(terms))
+        terms.append(frequency_formula(turn, mode, [IMAGINARY_UNIT]))
+    return in_order(terms)
 
 
 def eigenvalue_formula(mode: Mode, sign: int = 1) -> Expression:
@@ -90,14 +96,13 @@ def eigenvalue_formula(mode: Mode, sign: int = 1) -> Expression:
         return number_formula(mode.rate)
     if isinstance(mode.rate, str):
         frequency = Name(str(mode.frequency))
-        turned = weighted(one, [frequency, IMAGINARY_UNIT], [])
-        return sum_of([Name(mode.rate), turned])
+        return in_order([Name(mode.rate), weighted(one, [frequency, IMAGINARY_UNIT], [])])
     if mode.kind == "circular":
-        return complex_formula(mode.rate, one, mode.frequency)
+        return complex_formula(mode.rate, one, mode)
     if isinstance(mode.frequency, SurdSum):
         return surd_formula(mode.rate + one * mode.frequency)
     parts = [] if mode.rate.is_zero else [surd_formula(mode.rate)]
-    return opened(sum_of([*parts, frequency_formula(one, mode.frequency)]))
+    return in_order([*parts, frequency_formula(one, mode)])
 
 
 def eigenvalue_symbol(numbers: Sequence[int]) -> Symbol:

@@ -148,6 +148,10 @@ def eigenvalues_step(response: Response, digits: int) -> Step:
                 "decimal": _decimal(response, mode, digits),
             }
         )
+    for constant in response.closed_forms.constants:
+        if isinstance(constant.definition, Radical):
+            sides: tuple[Side, ...] = (Name(constant.name), constant.definition.formula)
+            statements.append(Statement("eigenvalues", sides))
     facts: dict[str, object] = {"rows": rows, "field": _field_name(response)}
     return Step("eigenvalues", tuple(statements), facts, rests_on=("characteristic_polynomial",))
 
@@ -189,11 +193,13 @@ def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
     constants = {c.name: c for c in response.closed_forms.constants}
     for factor, modes in zip(response.spectrum.factors, response.closed_forms.modes, strict=True):
         names = [
-            name for mode in modes for name in (mode.rate, mode.frequency) if isinstance(name, str)
+            name
+            for mode in modes
+            for name in (mode.rate, mode.frequency)
+            if isinstance(name, str) and isinstance(constants[name].definition, RootPart)
         ]
         if not names:
             continue
-        surds = all(isinstance(constants[name].definition, Radical) for name in names)
         polynomial = polynomial_formula(response.field, factor.p, LAMBDA)
         statements = [Statement("polynomial", (polynomial, ZERO))]
         even = factor.roots.form == "even"
@@ -201,10 +207,9 @@ def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
             statements = _even_statements(response, factor)
         yield Step(
             "named_roots",
-            tuple(statements) if not surds or even else (),
+            tuple(statements),
             {
                 "even": even,
-                "surds": surds,
                 "degree": factor.degree,
                 "rows": [_row(constants[name], digits) for name in names],
             },
@@ -228,17 +233,13 @@ def _even_statements(response: Response, factor: Factor) -> list[Statement]:
 
 def _row(constant: NamedConstant, digits: int) -> dict[str, object]:
     definition = constant.definition
-    row: dict[str, object] = {
+    if not isinstance(definition, RootPart):
+        raise TypeError("only parts of roots have rows here")
+    return {
         "name": Name(constant.name),
-        "interval": None,
         "definition": None,
-        "part": "",
-        "which": 0,
+        "interval": isolating_interval(definition),
+        "part": definition.part,
+        "which": definition.which,
         "decimal": constant_decimal(constant, digits),
     }
-    if isinstance(definition, Radical):
-        row["definition"] = definition.formula
-    elif isinstance(definition, RootPart):
-        row["part"], row["which"] = definition.part, definition.which
-        row["interval"] = isolating_interval(definition)
-    return row
