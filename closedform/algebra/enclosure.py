@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from decimal import ROUND_HALF_EVEN, Context, Decimal
 from fractions import Fraction
 
-from flint import arb, arb_mat, ctx, fmpq
+from flint import acb, arb, arb_mat, ctx, fmpq
 
 from closedform.algebra.surds import SurdSum
 
@@ -16,6 +16,7 @@ __all__ = [
     "certified_decimals",
     "enclosed_to",
     "exact_decimal",
+    "value_at",
 ]
 
 _MOST_BITS = 1 << 16
@@ -26,6 +27,14 @@ def ball_of(value: SurdSum | Fraction) -> arb:
     if isinstance(value, Fraction):
         return arb(fmpq(value.numerator, value.denominator))
     return sum((ball_of(c) * arb(d).sqrt() for d, c in value.terms), arb(0))
+
+
+def value_at(coefficients: Sequence[arb], z: acb) -> acb:
+    """Return the value of a polynomial, its coefficients highest first, by Horner's rule."""
+    value = acb(0)
+    for c in coefficients:
+        value = value * z + c
+    return value
 
 
 def enclosed_to(evaluate: Callable[[], arb_mat], digits: int) -> arb_mat:

@@ -16,8 +16,9 @@ from dataclasses import dataclass
 from fractions import Fraction
 from math import factorial
 
-from flint import acb, arb, arb_mat
+from flint import arb, arb_mat
 
+from closedform.algebra.enclosure import value_at
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial
 from closedform.algebra.root_matrix import RootMatrix, coefficients_low_first, taylor_at_root
 from closedform.algebra.spectrum import Factor, Spectrum
@@ -201,17 +202,10 @@ def _trace_weights(factor: Factor, t: arb, power: int) -> list[arb]:
     for root in factor.roots.enclosures():
         if root.imag < 0:
             continue
-        slope = _horner(balls, root)
+        slope = value_at(balls, root)
         value = (root * t).exp() / slope
         double = 1 if root.imag == 0 else 2
         for k in range(factor.degree):
             weights[k] = weights[k] + (value.real * double) * scale
             value = value * root
     return weights
-
-
-def _horner(coefficients: list[arb], z: acb) -> acb:
-    value = acb(0)
-    for c in coefficients:
-        value = value * z + c
-    return value

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from fractions import Fraction
+from math import lcm
 
 from closedform.algebra.field import BaseField, Polynomial
 from closedform.algebra.surds import SurdSum
@@ -117,12 +118,18 @@ def column(entries: Sequence[Expression]) -> Matrix:
 
 def surd_matrix(rows: Sequence[Sequence[SurdSum]]) -> Matrix:
     """Return a matrix of numbers, with a common denominator in front where that is shorter."""
-    denominators = {c.denominator for row in rows for value in row for _, c in value.terms}
-    if len(denominators) == 1 and denominators != {1} and len(rows) > 1:
-        common = Fraction(denominators.pop())
-        scaled = [[value * SurdSum.rational(common) for value in row] for row in rows]
-        return Matrix(_formulas(scaled), front=Number(1 / common))
-    return Matrix(_formulas(rows))
+    whole = _formulas(rows)
+    common = lcm(*(c.denominator for row in rows for value in row for _, c in value.terms))
+    if common == 1 or len(rows) == 1:
+        return Matrix(whole)
+    scaled = _formulas([[value * SurdSum.rational(common) for value in row] for row in rows])
+    if _operations(scaled) + 2 > _operations(whole):
+        return Matrix(whole)
+    return Matrix(scaled, front=Number(Fraction(1, common)))
+
+
+def _operations(rows: Sequence[Sequence[Expression]]) -> int:
+    return sum(operations(entry) for row in rows for entry in row)
 
 
 def _formulas(rows: Sequence[Sequence[SurdSum]]) -> tuple[tuple[Expression, ...], ...]:

@@ -17,6 +17,7 @@ from flint import ctx
 
 from closedform.algebra.exponential import ModalTerm
 from closedform.algebra.field import Polynomial
+from closedform.algebra.parts import vanishing_parts
 from closedform.algebra.roots import enclosed_roots, rounded
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
@@ -251,11 +252,12 @@ def _named_amounts(
 
     if mode.kind == "real":
         return named("real", 1), ZERO
-    even, odd = True, True
     if mode.factor.roots.form == "even":  # with x = lambda - a, p' is odd in x
         moved = entry.shift(mode.factor.roots.centre).to_list()[::-1]
-        even, odd = any(moved[1::2]), any(moved[0::2])
+        no_even, no_odd = not any(moved[1::2]), not any(moved[0::2])
+    else:
+        no_even, no_odd = vanishing_parts(field, p, mode.which, numerator)
     return (
-        named("real", 2) if even else ZERO,
-        named("imaginary", -2) if odd else ZERO,
+        ZERO if no_even else named("real", 2),
+        ZERO if no_odd else named("imaginary", -2),
     )

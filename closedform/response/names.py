@@ -7,8 +7,9 @@ from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import Literal
 
-from flint import acb, arb, ctx, fmpq
+from flint import arb, ctx, fmpq
 
+from closedform.algebra.enclosure import value_at
 from closedform.algebra.field import BaseField, Polynomial
 from closedform.algebra.roots import enclosed_roots
 from closedform.notation.evaluation import enclose
@@ -59,15 +60,11 @@ class ResiduePart:
     def enclosure(self) -> arb:
         """Return a ball for the number at FLINT's current precision."""
         root = enclosed_roots(self.base, self.polynomial)[self.which - 1]
-        value = self._at(self.numerator, root) / self._at(self.polynomial.diff(), root)
+        above = value_at([self.base.enclose(c) for c in self.numerator.to_list()], root)
+        below = value_at([self.base.enclose(c) for c in self.polynomial.diff().to_list()], root)
+        value = above / below
         weight = arb(fmpq(self.weight.numerator, self.weight.denominator))
         return weight * (value.real if self.part == "real" else value.imag)
-
-    def _at(self, polynomial: Polynomial, root: acb) -> acb:
-        value = acb(0)
-        for c in polynomial.to_list():
-            value = value * root + self.base.enclose(c)
-        return value
 
 
 @dataclass(frozen=True)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from decimal import ROUND_FLOOR, Decimal
 from fractions import Fraction
+from math import pi
 
 from flint import arb, ctx
 
@@ -23,6 +24,7 @@ __all__ = ["constant_decimal", "default_times", "isolating_interval", "sampled",
 
 _DEFAULT_STEPS = (0, 1, 2, 4, 8, 16)
 _FEWEST_FIGURES = 4
+_NEGLIGIBLE = 1e-12
 _ISOLATING_BITS = 512
 
 
@@ -88,17 +90,16 @@ def _decimals_around(ball: arb, digits: int) -> tuple[Fraction, Fraction]:
 def default_times(response: Response) -> tuple[SurdSum, ...]:
     """Return six instants that suit a model without times of its own.
 
-    The step is 1, 2 or 5 times a power of ten, about half the longest time constant or
+    The step is 1, 2 or 5 times a power of ten, at most half the longest time constant and
     an eighth of the longest period.
     """
     with ctx.workprec(64):
-        scales = []
-        for factor in response.spectrum.factors:
-            for root in factor.roots.enclosures():
-                decay, turn = abs(float(root.real.mid())), abs(float(root.imag.mid()))
-                scales += [1 / (2 * decay)] if decay > 1e-12 else []
-                scales += [0.785 / turn] if turn > 1e-12 else []
-    step = _round_number(Fraction(max(scales))) if scales else Fraction(1)
+        roots = [z for f in response.spectrum.factors for z in f.roots.enclosures()]
+        decays = [d for z in roots if (d := abs(float(z.real.mid()))) > _NEGLIGIBLE]
+        turns = [w for z in roots if (w := abs(float(z.imag.mid()))) > _NEGLIGIBLE]
+    bounds = [1 / (2 * min(decays))] if decays else []
+    bounds += [pi / (4 * min(turns))] if turns else []
+    step = _round_number(Fraction(min(bounds))) if bounds else Fraction(1)
     return tuple(SurdSum.rational(step * k) for k in _DEFAULT_STEPS)
 
 

@@ -29,7 +29,7 @@ __all__ = [
 
 def characteristic_polynomial_check(response: Response) -> Check:
     """The factors multiply to c, c(A) = 0 (Cayley-Hamilton), and c has the trace of A."""
-    item = "c(A) = 0"
+    item = "p(A) = 0"
     spectrum, field = response.spectrum, response.field
     product = reduce(lambda f, g: f * g, (f.p**f.multiplicity for f in spectrum.factors))
     if product != spectrum.characteristic_polynomial:
@@ -44,8 +44,8 @@ def characteristic_polynomial_check(response: Response) -> Check:
     return Check(
         item,
         "proved",
-        "the factors were multiplied out, A was put into the product: the zero matrix; "
-        "the sum of the eigenvalues is tr A",
+        "the factors were multiplied out and A was put in: the zero matrix; the "
+        "eigenvalues add up to the trace of A",
     )
 
 
@@ -68,8 +68,8 @@ def differential_equation_check(item: str, function: ExponentialMatrix, a: Field
     return Check(
         item,
         "proved",
-        f"substituted; the coefficient matrices of all {compared} functions e^(λt) t^j were "
-        "compared: zero in every entry",
+        f"put in and sorted by the functions of time, {compared} in number: every coefficient "
+        "is zero",
     )
 
 
@@ -78,7 +78,7 @@ def initial_value_check(item: str, function: ExponentialMatrix, expected: FieldM
     fault = _first_nonzero(function.at_zero() - expected)
     if fault is not None:
         return Check(item, "refuted", f"entry {fault} differs at t = 0")
-    return Check(item, "proved", "t = 0 was put in; every entry is the one expected")
+    return Check(item, "proved", "t = 0 was put in: every entry is the one given")
 
 
 def output_check(response: Response) -> Check:
@@ -86,14 +86,18 @@ def output_check(response: Response) -> Check:
     item = "y = C x"
     field, model = response.field, response.model
     if response.output is None:
-        return Check(item, "not attempted", "the model asks for no outputs")
+        raise ValueError("the model asks for no outputs")
     weights = field.matrix([[field.scalar(w) for w in o.weights] for o in model.outputs])
     for written, state in zip(response.output.terms, response.state.terms, strict=True):
         for left, right in zip(written.residues, state.residues, strict=True):
             fault = _first_nonzero_over_roots(left - right.after(weights))
             if fault is not None:
                 return Check(item, "refuted", f"output {fault[0]} is another combination")
-    return Check(item, "proved", "every coefficient of y is the stated combination of those of x")
+    return Check(
+        item,
+        "proved",
+        "every coefficient of the outputs is the stated combination of those of the states",
+    )
 
 
 def state_check(response: Response) -> Check:
@@ -105,7 +109,11 @@ def state_check(response: Response) -> Check:
             fault = _first_nonzero_over_roots(left - right.before(response.initial))
             if fault is not None:
                 return Check(item, "refuted", f"state {fault[0]} differs")
-    return Check(item, "proved", "e^(At) was multiplied by x0; all coefficients agree")
+    return Check(
+        item,
+        "proved",
+        "the transition matrix was multiplied by the initial state: all coefficients agree",
+    )
 
 
 def chain_check(response: Response) -> Check:
@@ -125,8 +133,8 @@ def chain_check(response: Response) -> Check:
     return Check(
         item,
         "proved",
-        "A - λI was applied to every vector of every chain: the one below it, and zero at "
-        "the eigenvector; the chains span the space",
+        "every vector of every chain was multiplied by A less its eigenvalue: the vector below "
+        "it, and zero for eigenvectors; the chains span the space",
     )
 
 
@@ -162,8 +170,8 @@ def routes_check(response: Response) -> Check:
     return Check(
         item,
         "proved",
-        "two ways to e^(At), by eigenvectors and chains and by the resolvent, were compared "
-        "on a basis of the space: all coefficients agree",
+        "the way by eigenvectors and chains and the way by the resolvent, which share none of "
+        "them, were compared on a basis of the space: all coefficients agree",
     )
 
 
@@ -189,8 +197,8 @@ def determinant_check(response: Response) -> Check:
     return Check(
         item,
         "proved",
-        "the traces of the spectral projectors are the multiplicities, and the eigenvalues "
-        "so counted add up to tr A; Jacobi's formula gives the determinant",
+        "the traces of the spectral projectors are the multiplicities, and the eigenvalues so "
+        "counted add up to the trace of A; Jacobi's formula gives the determinant",
     )
 
 
