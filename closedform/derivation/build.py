@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from closedform.derivation.canonical_steps import canonical_steps, has_canonical_steps
+from closedform.derivation.canonical_steps import canonical_steps
 from closedform.derivation.resolvent_steps import resolvent_steps
 from closedform.derivation.result_steps import (
     abbreviations_step,
@@ -47,7 +47,7 @@ def _steps(response: Response, record: VerificationRecord, digits: int) -> Itera
     yield eigenvalues_step(response, digits)
     yield from named_roots_steps(response, digits)
     shown: list[Step] = []
-    if has_canonical_steps(response):
+    if response.has_chains_in_print:
         shown += canonical_steps(response)
     else:
         shown += resolvent_steps(response)

@@ -40,9 +40,8 @@ from closedform.response.closed_form import exponential_of_rate
 from closedform.response.modes import Mode
 from closedform.response.response import Response
 
-__all__ = ["canonical_steps", "has_canonical_steps"]
+__all__ = ["canonical_steps"]
 
-_LARGEST = 8
 _UNIT = SurdSum.rational(1)
 Entry = tuple[SurdSum, SurdSum]
 """x + y w, where w is the square root that belongs to the eigenvalue (w^2 = D)."""
@@ -68,12 +67,6 @@ class _Block:
     def is_pair(self) -> bool:
         """Whether two eigenvalues a ± sqrt(D) share the chain."""
         return len(self.eigenvalue.numbers) == 2
-
-
-def has_canonical_steps(response: Response) -> bool:
-    """Whether eigenvectors, P, J and P^(-1) are printed for this response."""
-    small = len(response.model.states) <= _LARGEST
-    return small and all(f.degree <= 2 for f in response.spectrum.factors)
 
 
 def canonical_steps(response: Response) -> Iterator[Step]:

@@ -5,7 +5,6 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from closedform.algebra.surds import SurdSum
-from closedform.derivation.canonical_steps import has_canonical_steps
 from closedform.derivation.formulas import eigenvalue_formula, polynomial_formula
 from closedform.derivation.identities import identity_statement
 from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
@@ -34,7 +33,7 @@ def transition_step(response: Response, *, is_complex: bool) -> Step:
     forms = response.closed_forms
     sides: list[Side] = [Symbol("transition", argument=t)]
     route = "resolvent"
-    if has_canonical_steps(response):
+    if response.has_chains_in_print:
         route = "form"
         index = ("R",) if is_complex else ()
         sides.append(

@@ -88,6 +88,12 @@ class Response:
         return written_out(self)
 
     @property
+    def has_chains_in_print(self) -> bool:
+        """Whether eigenvectors, P, J and P^(-1) are printed: small, with eigenvalues in surds."""
+        small = len(self.model.states) <= LARGEST_WRITTEN_OUT
+        return small and all(factor.degree <= 2 for factor in self.spectrum.factors)
+
+    @property
     def transition(self) -> tuple[tuple[Expression, ...], ...]:
         """The entries of e^(At) as formulas; empty beyond `LARGEST_WRITTEN_OUT` states."""
         return self.closed_forms.transition

@@ -22,6 +22,7 @@ __all__ = [
     "determinant_check",
     "differential_equation_check",
     "initial_value_check",
+    "inverse_check",
     "output_check",
     "routes_check",
 ]
@@ -135,6 +136,23 @@ def chain_check(response: Response) -> Check:
         "proved",
         "every vector of every chain was multiplied by A less its eigenvalue: the vector below "
         "it, and zero for eigenvectors; the chains span the space",
+    )
+
+
+def inverse_check(response: Response) -> Check:
+    """The rows of P^(-1) in print: P P^(-1) = I, as a sum over chains and their eigenvalues."""
+    item = "P P^(-1) = I"
+    n = response.matrix.shape[0]
+    total = response.field.zeros(n, n)
+    for chain, rows in zip(response.jordan.chains, response.jordan.left_chains, strict=True):
+        slope = chain.factor.p.diff()
+        for vector, row in zip(chain.vectors, rows, strict=True):
+            total = total + (vector @ row).scaled(slope).trace_form()
+    fault = _first_nonzero(total - response.field.identity(n))
+    if fault is not None:
+        return Check(item, "refuted", f"entry {fault} of the product is another")
+    return Check(
+        item, "proved", "multiplied out, chain by chain, over the eigenvalues: the unit matrix"
     )
 
 

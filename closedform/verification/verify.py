@@ -17,6 +17,7 @@ from closedform.verification.identities import (
     determinant_check,
     differential_equation_check,
     initial_value_check,
+    inverse_check,
     output_check,
     routes_check,
     state_check,
@@ -38,6 +39,7 @@ def prove(response: Response) -> tuple[Check, ...]:
         state_check(response),
         *([output_check(response)] if response.output is not None else []),
         chain_check(response),
+        *([inverse_check(response)] if response.has_chains_in_print else []),
         routes_check(response),
         determinant_check(response),
     )
