@@ -19,6 +19,7 @@ from closedform.errors import InputError, MissingToolError
 
 __all__ = [
     "ENGINES",
+    "RERUN",
     "NoTexEngineError",
     "TexFailedError",
     "UnreadableTexError",
@@ -34,6 +35,8 @@ RUNS = 3
 """Widths of long tables settle in the third run at the latest."""
 
 RERUN = ("Rerun to get", "Table widths have changed", "Rerun LaTeX")
+"""What a log says when references or widths have not settled."""
+
 LATEXMK_OPTIONS = {"pdflatex": "-pdf", "lualatex": "-pdflua", "xelatex": "-pdfxe"}
 
 

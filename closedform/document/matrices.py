@@ -9,6 +9,7 @@ from closedform.derivation.step import Matrix
 from closedform.document.box import Box, Style, bracketed
 from closedform.document.formula import factors_of, formula, signed
 from closedform.notation.expression import (
+    Call,
     Expression,
     Negation,
     Number,
@@ -109,11 +110,9 @@ def _worth_taking(factor: Expression) -> bool:
     match factor:
         case Number(value):
             return value.denominator > 1
-        case Sum() | Negation():
-            return False
-        case Quotient():
+        case Call() | Quotient():
             return True
-    return True
+    return False
 
 
 def _without(entry: Expression, shared: list[Expression]) -> Expression:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Callable, Iterable
+from collections.abc import Callable, Iterable, Mapping
 from typing import Any
 
 from closedform.derivation.step import Side, Statement, Step, Symbol
@@ -81,6 +81,17 @@ def field(text: str) -> str:
     return rf"$\mathbb{{Q}}{roots}$"
 
 
+def amount(row: Mapping[str, Any]) -> Side:
+    """Return weight times the real or imaginary part of r(lambda)/p'(lambda)."""
+    at = Name("lambda")
+    index = (row["factor"],) if row["factor"] else ()
+    slope = Symbol("scalar", index, at, "p", order=1)
+    value: Side = Symbol("quotient", parts=(Symbol("scalar", (), at, "r"), slope))
+    if not row["real"]:
+        value = Symbol(f"{row['part']} part", parts=(value,))
+    return value if row["weight"] == number(1) else (row["weight"], value)
+
+
 FILTERS: dict[str, Callable[..., Any]] = {
     "text": escaped,
     "math": inline,
@@ -102,4 +113,5 @@ FUNCTIONS: dict[str, Callable[..., Any]] = {
     "exponential": exponential,
     "power": power,
     "pair": pair,
+    "amount": amount,
 }

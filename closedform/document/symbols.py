@@ -17,7 +17,8 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     derivative                 letter [x] indices argument order   x',  x'(t)
     transition                 letter [A] argument [t]             e^(At)
     exponential                letter [J] argument [t]             e^(Jt)
-    characteristic polynomial  letter [p] argument [lambda]        p(lambda)
+    characteristic polynomial  letter [p] indices argument         p(lambda),  p(A)
+                               [lambda], or parts: one side
     determinant                letter [A] argument [lambda]        det(lambda I - A)
     resolvent                  letter [A] argument [s]             (s I - A)^(-1)
     shifted                    letter [A] argument, order (power)  A - lambda_1 I,  (A + 2I)^2
@@ -25,6 +26,9 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     pair                       parts: real part a, frequency w     a +- i w
     real pair                  parts: mean a, half distance b      a +- b
     sum                        parts: sides                        R_0 g + R_1 g'
+    quotient                   parts: above, below                 r(lambda) / p'(lambda)
+    real part                  parts: one side                     Re z
+    imaginary part             parts: one side                     Im z
     dots                       -                                   ...
 
 `IMAGINARY_UNIT` of closedform.derivation.step is the upright i inside formulas.
@@ -39,7 +43,15 @@ from closedform.document.box import BINARY, Box, Style, bracketed, joined, plain
 from closedform.document.formula import formula, signed
 from closedform.document.matrices import ZERO, matrix_box
 from closedform.document.names import letter_box, name_box, subscripted
-from closedform.notation.expression import Expression, Name, Negation, Number, Product, Sum
+from closedform.notation.expression import (
+    Expression,
+    Name,
+    Negation,
+    Number,
+    Product,
+    Sum,
+    is_expression,
+)
 
 __all__ = ["ANY_ROW", "KINDS", "side_box", "symbol_box"]
 
@@ -58,6 +70,8 @@ def side_box(side: Side) -> Box:
         return matrix_box(side)
     if isinstance(side, tuple):
         return joined(*_product_boxes(side))
+    if not is_expression(side):
+        raise TypeError(f"{side} is no side of a relation")
     return formula(side)
 
 
@@ -149,6 +163,8 @@ def _exponential(letter: str) -> Callable[[Symbol], Box]:
 
 def _polynomial(symbol: Symbol) -> Box:
     box = name_box(symbol.letter or "p", extra=symbol.indices)
+    if symbol.parts:
+        return joined(box, bracketed(side_box(symbol.parts[0])))
     return _applied(box, symbol.argument or Name("lambda"))
 
 
@@ -178,7 +194,7 @@ def _shifted(symbol: Symbol) -> Box:
             amount = bracketed(amount)
         if size == Number(ZERO.value + 1):
             amount = Box("", 0.0)
-        gap = Box(r"\," if amount.height else "", 0.2)
+        gap = Box("" if isinstance(size, Name | Number) and not amount.height else r"\,", 0.2)
         sign = Box(" + " if negative else " - ", BINARY)
         box = joined(box, sign, amount, gap, Box(r"\boldsymbol{I}", 0.6))
     if symbol.order > 1:
@@ -231,6 +247,22 @@ def _sum(symbol: Symbol) -> Box:
     return joined(*boxes)
 
 
+def _quotient(symbol: Symbol) -> Box:
+    above, below = map(side_box, symbol.parts)
+    wide = max(above.width, below.width) + 0.3
+    return Box(rf"\frac{{{above.latex}}}{{{below.latex}}}", wide, 2)
+
+
+def _part(operator: str) -> Callable[[Symbol], Box]:
+    def setter(symbol: Symbol) -> Box:
+        inside = side_box(symbol.parts[0])
+        if _binds_loosely(symbol.parts[0]):
+            inside = bracketed(inside)
+        return joined(plain(rf"\operatorname{{{operator}}}", 1.5), inside)
+
+    return setter
+
+
 KINDS: dict[str, Callable[[Symbol], Box]] = {
     "matrix": _lettered("A"),
     "vector": _lettered("x"),
@@ -250,5 +282,8 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "pair": _pair,
     "real pair": _real_pair,
     "sum": _sum,
+    "quotient": _quotient,
+    "real part": _part("Re"),
+    "imaginary part": _part("Im"),
     "dots": lambda _: plain(r"\cdots", 1.2),
 }

@@ -5,7 +5,7 @@ import pytest
 from closedform.derivation.step import Statement, Symbol
 from closedform.document.display import displayed, displayed_together, fits
 from closedform.notation.expression import Call, Quotient
-from tests.document.samples import (
+from tests.document.making import (
     TRANSITION,
     A,
     P,
@@ -21,8 +21,8 @@ from tests.document.samples import (
     q,
     root,
     says,
-    wide_terms,
-)  # fmt: skip
+)
+from tests.document.wide_samples import wide_terms
 
 SYSTEM = says("system", Symbol("derivative"), (A, X))
 

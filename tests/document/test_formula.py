@@ -18,7 +18,7 @@ from closedform.notation.expression import (
     Sum,
     number,
 )
-from tests.document.samples import T, add, exp, neg, prod, q, root
+from tests.document.making import T, add, exp, neg, prod, q, root
 
 DISPLAYED = [
     (q(3), "3"),

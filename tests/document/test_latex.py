@@ -4,7 +4,7 @@ import pytest
 
 from closedform.document.latex import cell, decimal, expression_latex, inline, mixed, side_latex
 from closedform.notation.expression import Name
-from tests.document.samples import A, T, X, add, q, says
+from tests.document.making import A, T, X, add, q, says
 
 DECIMALS = [
     ("0", "$0$"),

@@ -3,7 +3,7 @@ from __future__ import annotations
 from closedform.derivation.step import Matrix
 from closedform.document.matrices import matrix_box, matrix_height, with_front
 from closedform.notation.expression import Product
-from tests.document.samples import T, add, column, exp, matrix, neg, prod, q
+from tests.document.making import T, add, column, exp, matrix, neg, prod, q
 
 
 def test_a_common_exponential_is_set_in_front() -> None:
@@ -31,6 +31,7 @@ def test_what_is_not_shared_stays() -> None:
         matrix((add("a", "b"), prod("a", "c"))),
         matrix((0, 0)),
         column(exp(-1)),
+        matrix(("omega", 0), (0, neg("omega"))),
     ):
         assert with_front(given) == given
 

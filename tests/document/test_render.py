@@ -40,7 +40,7 @@ def test_the_same_derivation_gives_the_same_bytes(name: str) -> None:
 def test_hash_order_and_locale_leave_no_trace() -> None:
     program = (
         "import sys; sys.path.insert(0, '.'); "
-        "from tests.document.samples import six_wide; "
+        "from tests.document.wide_samples import six_wide; "
         "from closedform.document.render import render; "
         "import hashlib; print(hashlib.sha256(render(six_wide()).encode()).hexdigest())"
     )

@@ -2,10 +2,10 @@ from __future__ import annotations
 
 import pytest
 
-from closedform.derivation.step import Side, Symbol
+from closedform.derivation.step import IMAGINARY_UNIT, Side, Symbol
 from closedform.document.symbols import KINDS, side_box
 from closedform.notation.expression import Name, Quotient
-from tests.document.samples import T, add, matrix, neg, prod, q, root
+from tests.document.making import T, add, matrix, neg, prod, q, root
 
 S = Symbol
 SIDES: list[tuple[Side, str]] = [
@@ -39,7 +39,7 @@ SIDES: list[tuple[Side, str]] = [
     (S("shifted", argument=q(3), order=2), r"(\boldsymbol{A} - 3\boldsymbol{I})^{2}"),
     (
         S("shifted", argument=add(1, root(2))),
-        r"\boldsymbol{A} - (1 + \sqrt{2})\boldsymbol{I}",
+        r"\boldsymbol{A} - (1 + \sqrt{2})\,\boldsymbol{I}",
     ),
     (S("entry", ("1", "2"), parts=(S("identity"),)), r"\bigl(\boldsymbol{I}\bigr)_{12}"),
     (S("entry", ("1", "12"), parts=(S("matrix"),)), r"\bigl(\boldsymbol{A}\bigr)_{1,12}"),
@@ -51,6 +51,12 @@ SIDES: list[tuple[Side, str]] = [
     (S("real pair", parts=(q(-1), add("a", "b"))), r"-1 \pm (a + b)"),
     (S("sum", parts=(S("matrix"), (q("c"), S("identity")))), r"\boldsymbol{A} + c\,\boldsymbol{I}"),
     (S("dots"), r"\cdots"),
+    (S("characteristic polynomial", parts=(S("matrix"),)), r"p(\boldsymbol{A})"),
+    (S("quotient", parts=(q(1), S("scalar", letter="p", order=1))), r"\frac{1}{p'}"),
+    (S("real part", parts=(q("z"),)), r"\operatorname{Re}z"),
+    (S("imaginary part", parts=(add("a", "b"),)), r"\operatorname{Im}(a + b)"),
+    (S("shifted", argument=prod("omega", IMAGINARY_UNIT)),
+     r"\boldsymbol{A} - \omega\mathrm{i}\,\boldsymbol{I}"),
     ((S("matrix"), S("vector")), r"\boldsymbol{A}\boldsymbol{x}"),
     (
         (S("matrix", letter="P"), S("exponential"), S("inverse")),
@@ -89,3 +95,8 @@ def test_an_unknown_kind_is_refused() -> None:
 def test_a_shifted_matrix_needs_its_eigenvalue() -> None:
     with pytest.raises(ValueError, match="eigenvalue"):
         side_box(Symbol("shifted"))
+
+
+def test_what_is_no_side_is_refused() -> None:
+    with pytest.raises(TypeError, match="is no side"):
+        side_box("x")  # type: ignore[arg-type]

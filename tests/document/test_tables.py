@@ -3,7 +3,7 @@ from __future__ import annotations
 import pytest
 
 from closedform.document.tables import decimal_tables
-from tests.document.samples import T, scalar
+from tests.document.making import T, scalar
 
 
 def test_decimals_are_aligned_at_the_point() -> None:
