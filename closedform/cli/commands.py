@@ -1,0 +1,166 @@
+"""The commands and their options.
+
+Only what parsing a command line needs is imported here; what a command works with is
+imported when it runs, so that ``closedform --help`` answers at once.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from enum import StrEnum
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+from closedform.cli.screen import Screen
+from closedform.cli.status import INTERRUPTED, status_of
+from closedform.errors import ClosedformError
+
+__all__ = ["app", "main"]
+
+app = typer.Typer(
+    help="Exact, proved closed-form responses of linear models x' = A x, written up as LaTeX.",
+    epilog="Exit status: 0 all well, 1 a result was refuted, 2 an input is not usable, "
+    "3 something outside is missing, such as a TeX engine.",
+    no_args_is_help=True,
+    add_completion=False,
+    rich_markup_mode=None,  # drawn help takes three times as long to appear
+    pretty_exceptions_enable=False,  # a fault of the program shows as Python shows it
+    context_settings={"help_option_names": ["--help", "-h"]},
+)
+
+
+class Depth(StrEnum):
+    """How much of the derivation is shown."""
+
+    SUMMARY = "summary"
+    WORKING = "working"
+    FULL = "full"
+
+
+def main() -> None:
+    """Run the command line of this process and exit with its status."""
+    app(prog_name="closedform")
+
+
+def _version(asked: bool) -> None:  # noqa: FBT001 - the value of a flag, handed in by position
+    if asked:
+        from closedform.cli.version import version
+
+        _finish(Screen(), lambda: Screen().line(f"closedform {version()}"))
+
+
+@app.callback()
+def closedform(
+    *,
+    version: Annotated[
+        bool,
+        typer.Option(
+            "--version", help="Show the version and exit.", callback=_version, is_eager=True
+        ),
+    ] = False,
+) -> None:
+    """Take the options that stand before a command."""
+
+
+@app.command(short_help="Solve and prove models, and write each one up.")
+def writeup(  # noqa: PLR0913 - one parameter for each option
+    *,
+    models: Annotated[
+        list[str],
+        typer.Argument(metavar="MODEL.toml", hidden=True),
+    ],
+    into: Annotated[
+        Path, typer.Option(metavar="DIR", help="The folder for the files; made if missing.")
+    ] = Path("out"),
+    pdf: Annotated[
+        bool, typer.Option("--pdf", help="Compile each write-up to a PDF, too.")
+    ] = False,
+    depth: Annotated[
+        Depth, typer.Option(help="How much of the derivation is shown.")
+    ] = Depth.WORKING,
+    digits: Annotated[
+        int,
+        typer.Option(min=1, max=40, metavar="N", help="Significant digits of the tables."),
+    ] = 6,
+    template: Annotated[
+        str,
+        typer.Option(
+            metavar="NAME-OR-DIR", help="A shipped template, or a folder with files of your own."
+        ),
+    ] = "latex",
+    record: Annotated[
+        bool,
+        typer.Option("--record/--no-record", help="Write NAME.record.json with the exact results."),
+    ] = True,
+    quiet: Annotated[bool, typer.Option("--quiet", help="Print nothing but errors.")] = False,
+) -> None:
+    """Solve and prove each model, and write it up as a LaTeX document.
+
+    The write-up of tank.toml is out/tank.tex. On a terminal a summary of each model is
+    shown; in a pipe the paths of the files written, one per line. One model that fails
+    does not stop the others.
+    """
+    screen = Screen(quiet=quiet)
+
+    def work() -> int:
+        from closedform.cli.batch import Wishes, write_models
+
+        wishes = Wishes(into, depth.value, digits, template, record=record, pdf=pdf)
+        return write_models(models, wishes, screen)
+
+    _finish(screen, work)
+
+
+@app.command(short_help="List the starter models, or copy one to work from.")
+def starter(
+    *,
+    name: Annotated[
+        str | None,
+        typer.Argument(metavar="NAME", hidden=True),
+    ] = None,
+    into: Annotated[
+        Path, typer.Option(metavar="DIR", help="The folder for the copy; made if missing.")
+    ] = Path(),
+    replace: Annotated[
+        bool, typer.Option("--replace", help="Replace a file of the same name.")
+    ] = False,
+) -> None:
+    """Copy a starter model to work from; without a NAME, list them all."""
+    screen = Screen()
+
+    def work() -> None:
+        import shlex
+
+        from closedform.cli.starters import copy_starter, listing
+
+        if name is not None:
+            path = copy_starter(name, into, replace=replace)
+            screen.path(path)
+            hint = f"Write it up with: closedform writeup {shlex.quote(str(path))}"
+        else:
+            for line in listing():
+                screen.line(line)
+            hint = "Copy one with: closedform starter NAME"
+        if screen.shows_results:
+            screen.line(f"\n{hint}")
+
+    _finish(screen, work)
+
+
+def _finish(screen: Screen, work: Callable[[], int | None]) -> None:
+    """Do the work of a command and leave with its status.
+
+    Errors that this package raises on purpose are told in their paragraph; any other
+    exception is a fault of the program and is let through.
+    """
+    try:
+        status = work() or 0
+    except ClosedformError as error:
+        screen.error(error)
+        status = status_of(error)
+    except KeyboardInterrupt:
+        screen.notice("stopped; every file written so far is complete")
+        status = INTERRUPTED
+    raise typer.Exit(status)
