@@ -25,7 +25,7 @@ from closedform.derivation.formulas import (
     in_order,
 )
 from closedform.derivation.spectrum_steps import Eigenvalue, eigenvalues_of
-from closedform.derivation.step import Matrix, Statement, Step, Symbol
+from closedform.derivation.step import Depth, Matrix, Statement, Step, Symbol
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -207,7 +207,8 @@ def _jordan_step(response: Response, blocks: Sequence[_Block]) -> Step:
         "diagonal": all(block.size == 1 for block in blocks),
         "n": len(response.model.states),
     }
-    return Step("jordan_form", tuple(statements), facts, rests_on=("eigenvectors",))
+    depth: Depth = "full" if is_complex else "working"
+    return Step("jordan_form", tuple(statements), facts, ("eigenvectors",), depth)
 
 
 def _jordan_rows(value: Expression, size: int) -> Rows:
@@ -251,7 +252,7 @@ def _real_form_step(blocks: Sequence[_Block]) -> Step:
         Statement("P inverse", (inverse, _gathered(rows))),
     )
     chained = any(b.size > 1 and b.eigenvalue.mode.kind == "circular" for b in blocks)
-    return Step("real_form", statements, {"chained": chained}, rests_on=("jordan_form",))
+    return Step("real_form", statements, {"chained": chained}, rests_on=("eigenvectors",))
 
 
 def _real_columns(block: _Block) -> list[list[Expression]]:

@@ -1,37 +1,41 @@
-"""The identities of a verification record as mathematics to print."""
+"""The items of a verification record as they are printed."""
 
 from __future__ import annotations
 
 from closedform.derivation.formulas import A
 from closedform.derivation.step import Side, Statement, Symbol
-from closedform.notation.expression import Name, number
+from closedform.notation.expression import number
 
-__all__ = ["identity_statement"]
+__all__ = ["printed_item"]
 
-_T = Name("t")
 _X = Symbol("vector", letter="x")
+_X0 = Symbol("vector", letter="x", indices=("0",))
 _EXP = Symbol("transition")
 _P, _J = Symbol("matrix", letter="P"), Symbol("matrix", letter="J")
-_ZERO = Symbol("zero")
+_INVERSE = Symbol("inverse", letter="P")
 
-_SIDES: dict[str, tuple[Side, ...]] = {
-    "c(A) = 0": (Symbol("characteristic polynomial", argument=Name("A")), number(0)),
+_IDENTITIES: dict[str, tuple[Side, ...]] = {
+    "p(A) = 0": (Symbol("characteristic polynomial", parts=(A,)), Symbol("zero")),
+    "d/dt e^(At) - A e^(At) = 0": ((Symbol("time derivative"), _EXP), (A, _EXP)),
+    "e^(A0) = I": (Symbol("transition", argument=number(0)), Symbol("identity")),
     "x' - A x = 0": (Symbol("derivative", letter="x"), (A, _X)),
-    "x(0) = x0": (
-        Symbol("vector", letter="x", argument=number(0)),
-        Symbol("vector", letter="x", indices=("0",)),
-    ),
+    "x(0) = x0": (Symbol("vector", letter="x", argument=number(0)), _X0),
+    "x = e^(At) x0": (_X, (_EXP, _X0)),
     "A P = P J": ((A, _P), (_P, _J)),
-    "P P^(-1) = I": ((_P, Symbol("inverse", letter="P")), Symbol("identity")),
-    "P e^(Jt) P^(-1) = e^(At)": (
-        (_P, Symbol("exponential", letter="J"), Symbol("inverse", letter="P")),
-        _EXP,
-    ),
-    "x = e^(At) x0": (_X, (_EXP, Symbol("vector", letter="x", indices=("0",)))),
+    "P P^(-1) = I": ((_P, _INVERSE), Symbol("identity")),
+    "P e^(Jt) P^(-1) = e^(At)": ((_P, Symbol("exponential", letter="J"), _INVERSE), _EXP),
+}
+_WORDS = {
+    "y = C x": "outputs",
+    "det e^(At) = e^(tr(A) t)": "determinant of the transition matrix",
+    "e^(At), numbers": "transition matrix, in numbers",
+    "det e^(At), numbers": "determinant, in numbers",
+    "e^(At), second opinion": "transition matrix, second opinion",
 }
 
 
-def identity_statement(item: str) -> Statement | str:
-    """Return the identity as a statement, or the item's own words where it is none."""
-    sides = _SIDES.get(item)
-    return item if sides is None else Statement("identity", sides)
+def printed_item(item: str) -> Statement | str:
+    """Return an item as the identity it is, or in words."""
+    if item in _IDENTITIES:
+        return Statement("identity", _IDENTITIES[item])
+    return _WORDS.get(item, item)

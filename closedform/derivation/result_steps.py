@@ -6,7 +6,7 @@ from collections.abc import Iterator
 
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.formulas import eigenvalue_formula, polynomial_formula
-from closedform.derivation.identities import identity_statement
+from closedform.derivation.identities import printed_item
 from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
 from closedform.notation.expression import Call, Expression, Name, Number, number
 from closedform.notation.plain import plain
@@ -63,7 +63,7 @@ def solution_step(response: Response) -> Step:
         for state, formula in zip(model.states[:shown], forms.solution, strict=False)
     ]
     facts = {"shown": shown, "n": len(model.states)}
-    return Step("solution", tuple(statements), facts, rests_on=("transition",))
+    return Step("solution", tuple(statements), facts, ("transition",), "summary")
 
 
 def outputs_step(response: Response) -> Step:
@@ -75,7 +75,7 @@ def outputs_step(response: Response) -> Step:
             response.model.outputs, response.closed_forms.outputs, strict=True
         )
     ]
-    return Step("outputs", tuple(statements), {}, rests_on=("solution",))
+    return Step("outputs", tuple(statements), {}, ("solution",), "summary")
 
 
 def _function(name: str, t: Expression) -> Symbol:
@@ -91,7 +91,7 @@ def abbreviations_step(response: Response, shown: frozenset[str], digits: int) -
     ]
     if not rows:
         return None
-    return Step("abbreviations", (), {"rows": rows}, rests_on=("solution",))
+    return Step("abbreviations", (), {"rows": rows}, ("solution",), "summary")
 
 
 def _abbreviation(response: Response, constant: NamedConstant, digits: int) -> dict[str, object]:
@@ -135,7 +135,7 @@ def values_step(response: Response, digits: int) -> Step:
     ]
     header: list[Side] = [t, *(_function(name, t) for name in names)]
     facts = {"header": header, "rows": rows, "digits": digits, "chosen": not model.times}
-    return Step("values", (), facts, rests_on=("solution",))
+    return Step("values", (), facts, ("solution",), "summary")
 
 
 def _instant(time: SurdSum) -> str:
@@ -163,15 +163,15 @@ def _terminating(numerator: int, denominator: int) -> str:
 def verification_step(record: VerificationRecord) -> Step:
     """List what was proved or enclosed, and how."""
     rows = [
-        {"item": identity_statement(check.item), "outcome": check.outcome, "how": check.how}
+        {"item": printed_item(check.item), "outcome": check.outcome, "how": check.how}
         for check in record.checks
     ]
-    return Step("verification", (), {"rows": rows})
+    return Step("verification", (), {"rows": rows}, depth="summary")
 
 
 def cautions_step() -> Step:
     """Say what the proof does not cover."""
-    return Step("cautions")
+    return Step("cautions", depth="summary")
 
 
 def names_in(expressions: Iterator[Expression]) -> frozenset[str]:

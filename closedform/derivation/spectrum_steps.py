@@ -92,7 +92,7 @@ def model_step(response: Response) -> Step:
         "n": len(model.states),
         "outputs": [output.name for output in model.outputs],
     }
-    return Step("model", tuple(statements), facts)
+    return Step("model", tuple(statements), facts, depth="summary")
 
 
 def _at(symbol: Symbol, t: Expression) -> Symbol:
@@ -153,7 +153,8 @@ def eigenvalues_step(response: Response, digits: int) -> Step:
             sides: tuple[Side, ...] = (Name(constant.name), constant.definition.formula)
             statements.append(Statement("eigenvalues", sides))
     facts: dict[str, object] = {"rows": rows, "field": _field_name(response)}
-    return Step("eigenvalues", tuple(statements), facts, rests_on=("characteristic_polynomial",))
+    rests_on = ("characteristic_polynomial",)
+    return Step("eigenvalues", tuple(statements), facts, rests_on, "summary")
 
 
 _MEANINGS = {"real": "real", "circular": "conjugate pair", "hyperbolic": "real pair"}
@@ -214,6 +215,7 @@ def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
                 "rows": [_row(constants[name], digits) for name in names],
             },
             rests_on=("eigenvalues",),
+            depth="summary",
         )
 
 

@@ -7,13 +7,18 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from typing import Literal
 
 from closedform.notation.expression import Expression, Name
 
-__all__ = ["IMAGINARY_UNIT", "Derivation", "Matrix", "Side", "Statement", "Step", "Symbol"]
+__all__ = ["IMAGINARY_UNIT", "Depth", "Derivation", "Matrix", "Side", "Statement", "Step", "Symbol"]
 
 IMAGINARY_UNIT = Name("@i")
 """The upright i.  No model can name a quantity so; a state ``i`` stays an italic letter."""
+
+
+Depth = Literal["summary", "working", "full"]
+"""How much of a derivation is shown, from little to all."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -58,12 +63,16 @@ class Statement:
 
 @dataclass(frozen=True, slots=True)
 class Step:
-    """One step.  `kind` names the template part that words it; `facts` are what it may say."""
+    """One step.  `kind` names the template part that words it; `facts` are what it may say.
+
+    `depth` is the least depth of a document in which the step is printed.
+    """
 
     kind: str
     statements: tuple[Statement, ...] = ()
     facts: Mapping[str, object] = field(default_factory=dict)
     rests_on: tuple[str, ...] = ()
+    depth: Depth = "working"
 
 
 @dataclass(frozen=True, slots=True)

@@ -115,6 +115,12 @@ def _factor(expression: Expression, style: Style) -> Box:
             return bracketed(_sum_level(expression, style), style)
         case Product():
             return bracketed(_product(expression, style), style)
+        case Quotient(Product(factors), Number() as below) if style is Style.DISPLAY and isinstance(
+            factors[-1], Sum
+        ):
+            # a sum is easier to read beside a fraction than on top of it
+            front = Quotient(_rest(factors[:-1]), below)
+            return _product(Product((front, factors[-1])), style)
         case Quotient(above, below):
             if style >= Style.SCRIPT:
                 return _slashed(above, below, style)

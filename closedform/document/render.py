@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
 from importlib import resources
 from importlib.resources.abc import Traversable
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, get_args
 
-from closedform.derivation.step import Derivation, Symbol
+from closedform.derivation.step import Depth, Derivation, Symbol
 from closedform.document.latex import fits
 from closedform.document.phrases import FILTERS, FUNCTIONS
 from closedform.document.references import References
@@ -20,30 +19,8 @@ if TYPE_CHECKING:
 
 __all__ = ["DEPTHS", "TemplateError", "UnknownDepthError", "render", "templates_folder"]
 
-SUMMARY = frozenset(
-    {
-        "model",
-        "eigenvalues",
-        "named_roots",
-        "abbreviations",
-        "solution",
-        "outputs",
-        "values",
-        "verification",
-        "cautions",
-    }
-)
-ALL = SUMMARY | {
-    "characteristic_polynomial",
-    "eigenvectors",
-    "jordan_form",
-    "real_form",
-    "exponential_of_form",
-    "resolvent",
-    "transition",
-}
-DEPTHS: Mapping[str, frozenset[str]] = {"summary": SUMMARY, "working": ALL, "full": ALL}
-"""The kinds of step printed at each depth.  In full, every part also names what it rests on."""
+DEPTHS: tuple[str, ...] = get_args(Depth)
+"""From little to all.  In full, every part also names what it rests on."""
 
 MAIN = "writeup.tex.j2"
 LONGEST_FOOT = 60
@@ -97,10 +74,8 @@ def render(
 
     references = References()
     environment = _environment(_loader(str(template)), references)
-    steps = [step for step in derivation.steps if step.kind in DEPTHS[depth]]
-    unknown = next((step.kind for step in derivation.steps if step.kind not in ALL), None)
-    if unknown is not None:
-        raise ValueError(f"no kind of step is called {unknown!r}")
+    shown = DEPTHS[: DEPTHS.index(depth) + 1]
+    steps = [step for step in derivation.steps if step.depth in shown]
     kinds = {step.kind for step in derivation.steps}
     values = {
         "title": derivation.title,

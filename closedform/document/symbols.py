@@ -29,6 +29,7 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     quotient                   parts: above, below                 r(lambda) / p'(lambda)
     real part                  parts: one side                     Re z
     imaginary part             parts: one side                     Im z
+    time derivative            argument [t]                        d/dt
     dots                       -                                   ...
 
 `IMAGINARY_UNIT` of closedform.derivation.step is the upright i inside formulas.
@@ -238,6 +239,11 @@ def _plus_minus(middle: Side, distance: Side) -> Box:
     return joined(side_box(middle), plain(r" \pm ", BINARY), half)
 
 
+def _time_derivative(symbol: Symbol) -> Box:
+    t = formula(symbol.argument or Name("t"))
+    return Box(rf"\frac{{\mathrm{{d}}}}{{\mathrm{{d}}{t.latex}}}", t.width + 0.8, 2)
+
+
 def _sum(symbol: Symbol) -> Box:
     boxes: list[Box] = []
     for i, part in enumerate(symbol.parts):
@@ -286,4 +292,5 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "real part": _part("Re"),
     "imaginary part": _part("Im"),
     "dots": lambda _: plain(r"\cdots", 1.2),
+    "time derivative": _time_derivative,
 }

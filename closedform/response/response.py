@@ -153,7 +153,7 @@ def written_out(response: Response) -> ClosedForms:
 
 
 def _written(response: Response, *, name_surds: bool) -> ClosedForms:
-    """Names are given in the order of printing: roots, solution, outputs, e^(At)."""
+    """Names are given in the order of printing: roots, solution, outputs, g, e^(At)."""
     model, factors = response.model, response.spectrum.factors
     book = NameBook(frozenset({*model.states, *(o.name for o in model.outputs), model.time}))
     first = accumulate((f.degree for f in factors), initial=1)
@@ -177,12 +177,6 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     outputs: tuple[Expression, ...] = ()
     if response.output is not None:
         outputs = tuple(formula(response.output, i) for i in range(len(model.outputs)))
-    transition: tuple[tuple[Expression, ...], ...] = ()
-    fronted: tuple[Expression | None, tuple[tuple[Expression, ...], ...]] = (None, ())
-    if n <= LARGEST_WRITTEN_OUT:
-        entries = [[parts(response.exponential, i, k) for k in range(n)] for i in range(n)]
-        transition = tuple(tuple(closed_form(e, model.time) for e in row) for row in entries)
-        fronted = fronted_matrix(entries, transition, model.time)
     needs_impulses = any(factor.degree > 2 for factor in factors)
     impulses = tuple(
         _impulse(response.field, factor, modes_of_factor, book, model.time)
@@ -190,6 +184,12 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
         else None
         for factor, modes_of_factor in zip(factors, modes, strict=True)
     )
+    transition: tuple[tuple[Expression, ...], ...] = ()
+    fronted: tuple[Expression | None, tuple[tuple[Expression, ...], ...]] = (None, ())
+    if n <= LARGEST_WRITTEN_OUT:
+        entries = [[parts(response.exponential, i, k) for k in range(n)] for i in range(n)]
+        transition = tuple(tuple(closed_form(e, model.time) for e in row) for row in entries)
+        fronted = fronted_matrix(entries, transition, model.time)
     return ClosedForms(modes, solution, outputs, transition, fronted, impulses, book.constants())
 
 

@@ -36,12 +36,11 @@ LARGEST_FOR_MPMATH = 12
 
 
 def trial_times(response: Response) -> tuple[Fraction, ...]:
-    """Return three instants, short to long: 1/3, 1 and 7 times a power of 2 near 1/norm(A)."""
-    sums = [
-        sum((abs(response.field.enclose(e)) for e in row), arb(0))
-        for row in response.matrix.to_list()
-    ]
-    mantissa, exponent = max(row.mid() for row in sums).man_exp()
+    """Return three instants: 1/3, 1 and 7 times a power of 2 near 1/|lambda|, lambda largest."""
+    with ctx.workprec(64):
+        roots = [z for f in response.spectrum.factors for z in f.roots.enclosures()]
+        largest = max((abs(z).mid() for z in roots), key=float)
+    mantissa, exponent = largest.man_exp()
     order = int(mantissa).bit_length() + int(exponent) if mantissa else 0
     unit = Fraction(2) ** -order
     return (unit / 3, unit, unit * 7)
