@@ -50,6 +50,7 @@ SIDES: list[tuple[Side, str]] = [
     (S("real pair", parts=(q(-1), root(2))), r"-1 \pm \sqrt{2}"),
     (S("real pair", parts=(q(-1), add("a", "b"))), r"-1 \pm (a + b)"),
     (S("sum", parts=(S("matrix"), (q("c"), S("identity")))), r"\boldsymbol{A} + c\,\boldsymbol{I}"),
+    (S("time derivative"), r"\frac{\mathrm{d}}{\mathrm{d}t}"),
     (S("dots"), r"\cdots"),
     (S("characteristic polynomial", parts=(S("matrix"),)), r"p(\boldsymbol{A})"),
     (S("quotient", parts=(q(1), S("scalar", letter="p", order=1))), r"\frac{1}{p'}"),
