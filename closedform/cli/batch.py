@@ -6,7 +6,9 @@ import os
 from collections.abc import Sequence
 from dataclasses import dataclass
 from pathlib import Path
+from typing import Literal
 
+from closedform.cli.places import check_folder
 from closedform.cli.progress import Progress
 from closedform.cli.screen import Screen, printable
 from closedform.cli.status import status_of, worst
@@ -20,7 +22,7 @@ class Wishes:
     """What is wanted of every model; `depth` and `template` are those of `write_up`."""
 
     into: Path
-    depth: str
+    depth: Literal["summary", "working", "full"]
     digits: int
     template: str
     record: bool
@@ -51,9 +53,10 @@ class SameFileError(InputError):
 def write_models(models: Sequence[str], wishes: Wishes, screen: Screen) -> int:
     """Write up each model, print what came of it, and return the exit status of all.
 
-    Raises:  SameFileError before anything is done.
+    Raises:  SameFileError or CannotWriteError before anything is done.
     """
     refuse_same_files(models, wishes)
+    check_folder(wishes.into)
     statuses = []
     with screen.progress(len(models)) as progress:
         for model in models:

@@ -7,13 +7,12 @@ imported when it runs, so that ``closedform --help`` answers at once.
 from __future__ import annotations
 
 from collections.abc import Callable
-from enum import StrEnum
 from pathlib import Path
-from typing import Annotated
+from typing import Annotated, Literal
 
 import typer
 
-from closedform.cli.screen import Screen
+from closedform.cli.screen import Screen, prepare_streams
 from closedform.cli.status import INTERRUPTED, status_of
 from closedform.errors import ClosedformError
 
@@ -31,16 +30,12 @@ app = typer.Typer(
 )
 
 
-class Depth(StrEnum):
-    """How much of the derivation is shown."""
-
-    SUMMARY = "summary"
-    WORKING = "working"
-    FULL = "full"
+Depth = Literal["summary", "working", "full"]
 
 
 def main() -> None:
     """Run the command line of this process and exit with its status."""
+    prepare_streams()
     app(prog_name="closedform")
 
 
@@ -77,9 +72,7 @@ def writeup(  # noqa: PLR0913 - one parameter for each option
     pdf: Annotated[
         bool, typer.Option("--pdf", help="Compile each write-up to a PDF, too.")
     ] = False,
-    depth: Annotated[
-        Depth, typer.Option(help="How much of the derivation is shown.")
-    ] = Depth.WORKING,
+    depth: Annotated[Depth, typer.Option(help="How much of the derivation is shown.")] = "working",
     digits: Annotated[
         int,
         typer.Option(min=1, max=40, metavar="N", help="Significant digits of the tables."),
@@ -107,7 +100,7 @@ def writeup(  # noqa: PLR0913 - one parameter for each option
     def work() -> int:
         from closedform.cli.batch import Wishes, write_models
 
-        wishes = Wishes(into, depth.value, digits, template, record=record, pdf=pdf)
+        wishes = Wishes(into, depth, digits, template, record=record, pdf=pdf)
         return write_models(models, wishes, screen)
 
     _finish(screen, work)

@@ -6,6 +6,7 @@ scripts can read it.  Whether there is a terminal is asked of each stream by its
 
 from __future__ import annotations
 
+import io
 import os
 import sys
 import textwrap
@@ -15,19 +16,55 @@ from dataclasses import dataclass, field
 from pathlib import Path
 from typing import TYPE_CHECKING, TextIO
 
-from closedform.errors import ClosedformError
+from closedform.errors import ClosedformError, InputError
 
 if TYPE_CHECKING:
     from rich.console import Console
 
     from closedform.cli.progress import Progress
 
-__all__ = ["Line", "Screen", "printable"]
+__all__ = ["Line", "Screen", "StreamError", "prepare_streams", "printable"]
 
 Line = tuple[tuple[str, str], ...]
 """A line of output: pieces of text, each with the name of a rich style, or none."""
 
 NARROWEST = 40
+PLAIN_STYLES = {
+    "bar.back": "dim",
+    "bar.complete": "default",
+    "bar.finished": "default",
+    "progress.download": "default",
+    "progress.elapsed": "dim",
+}
+"""The moving line has no colours: colour is kept for errors."""
+
+
+class StreamError(InputError):
+    """Standard output or standard error takes no more text."""
+
+    def __init__(self, reason: str) -> None:
+        super().__init__(reason)
+        self.reason = reason
+
+    def __str__(self) -> str:
+        return (
+            f"What was to be printed cannot be written: {self.reason}. Every file written so far "
+            "is complete; send the output elsewhere, or make room."
+        )
+
+
+def prepare_streams() -> None:
+    """Make the streams of this process fit to be written to, whatever they are.
+
+    A closed one takes everything and keeps nothing, and a sign that an encoding does not
+    have is shown as a question mark.
+    """
+    if sys.stdout is None:
+        sys.stdout = Path(os.devnull).open("w")  # noqa: SIM115 - open as long as the process
+    if sys.stderr is None:
+        sys.stderr = Path(os.devnull).open("w")  # noqa: SIM115 - as standard output
+    if isinstance(sys.stdout, io.TextIOWrapper):
+        sys.stdout.reconfigure(errors="replace")
 
 
 def printable(text: str) -> str:
@@ -142,13 +179,13 @@ class Screen:
                 os.dup2(os.open(os.devnull, os.O_WRONLY), stream.fileno())
                 if isinstance(error, BrokenPipeError):
                     return  # nobody reads any more; the files are still wanted
-                from closedform.document.files import CannotWriteError
-
-                reason = (error.strerror or str(error)).lower()
-                raise CannotWriteError("standard output", reason) from error
+                raise StreamError((error.strerror or str(error)).lower()) from error
 
 
 def _console(stream: TextIO) -> Console:
     from rich.console import Console
+    from rich.theme import Theme
 
-    return Console(file=stream, highlight=False, markup=False, emoji=False)
+    return Console(
+        file=stream, theme=Theme(PLAIN_STYLES), highlight=False, markup=False, emoji=False
+    )

@@ -8,6 +8,7 @@ from difflib import get_close_matches
 from importlib.resources.abc import Traversable
 from pathlib import Path
 
+from closedform.cli.places import check_folder
 from closedform.document.files import write_whole
 from closedform.document.render import templates_folder
 from closedform.errors import InputError
@@ -69,6 +70,7 @@ def copy_starter(name: str, into: Path, *, replace: bool = False) -> Path:
     if chosen not in found:
         nearest = get_close_matches(chosen, found, n=1)
         raise UnknownStarterError(name, nearest[0] if nearest else None)
+    check_folder(into)
     path = into / f"{chosen}{ENDING}"
     if os.path.lexists(path) and not replace:
         raise StarterExistsError(str(path))

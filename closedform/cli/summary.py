@@ -15,10 +15,11 @@ from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
 from closedform.cli.screen import Line
 from closedform.document.writeup import WriteUp
+from closedform.notation.expression import Expression, Name, Negation, Number, Quotient, Sum
 from closedform.notation.plain import plain
 from closedform.notation.surd_formula import surd_expression
 from closedform.response.modes import Mode
-from closedform.response.names import RootPart
+from closedform.response.names import Radical, RootPart
 from closedform.response.response import ClosedForms, Response
 from closedform.response.sampling import constant_decimal, surd_decimal
 from closedform.verification.record import VerificationRecord
@@ -120,33 +121,35 @@ def proofs(record: VerificationRecord) -> list[tuple[str, str]]:
 
 def _values(mode: Mode, forms: ClosedForms, digits: int) -> list[tuple[str, str]]:
     """Return decimals and exact form (if the decimals are not exact) of a mode's eigenvalues."""
-    rate, rate_text = _number(mode.rate, forms, digits)
+    rate, exact_rate = _number(mode.rate, forms, digits)
     if mode.frequency is None:
-        return [(rate, "" if _is(rate, mode.rate) else rate_text)]
-    frequency, frequency_text = _number(mode.frequency, forms, digits)
+        return [(rate, "" if _is(rate, mode.rate) else plain(exact_rate))]
+    frequency, exact_frequency = _number(mode.frequency, forms, digits)
     moved = not (isinstance(mode.rate, SurdSum) and mode.rate.is_zero)
-    if mode.kind == "circular":
-        exact = f"{rate_text if moved else ''} ± i*{frequency_text}".strip()
-        known = _is(rate, mode.rate) and _is(frequency, mode.frequency)
-        return [(f"{rate if moved else ''} ± {frequency} i".strip(), "" if known else exact)]
-    return [
-        (
-            _shifted(mode, sign, digits),
-            f"{rate_text} {'+' if sign > 0 else '-'} {frequency_text}"
-            if moved
-            else f"{'' if sign > 0 else '-'}{frequency_text}",
-        )
-        for sign in (1, -1)
-    ]
+    if mode.kind == "hyperbolic":
+        front = (exact_rate,) if moved else ()
+        offsets = (exact_frequency, Negation(exact_frequency))
+        return [
+            (_shifted(mode, sign, digits), plain(Sum((*front, offset))))
+            for sign, offset in zip((1, -1), offsets, strict=True)
+        ]
+    turn = plain(exact_frequency)
+    fraction = isinstance(exact_frequency, Number) and "/" in turn
+    if fraction or isinstance(exact_frequency, Sum | Quotient):
+        turn = f"({turn})"  # otherwise the i would seem to stand below the line
+    exact = f"{plain(exact_rate) if moved else ''} ± {turn} i".strip()
+    known = _is(rate, mode.rate) and _is(frequency, mode.frequency)
+    return [(f"{rate if moved else ''} ± {frequency} i".strip(), "" if known else exact)]
 
 
-def _number(value: SurdSum | str, forms: ClosedForms, digits: int) -> tuple[str, str]:
-    """Return the decimals of a number, and its exact form or name as a factor or first term."""
+def _number(value: SurdSum | str, forms: ClosedForms, digits: int) -> tuple[str, Expression]:
+    """Return the decimals of a number, and its exact form, or its name if it has none."""
     if isinstance(value, SurdSum):
-        text = plain(surd_expression(value))
-        return surd_decimal(value, digits), f"({text})" if " " in text else text
+        return surd_decimal(value, digits), surd_expression(value)
     constant = next(c for c in forms.constants if c.name == value)
-    return constant_decimal(constant, digits), value
+    exact = constant.definition
+    formula = exact.formula if isinstance(exact, Radical) else Name(value)
+    return constant_decimal(constant, digits), formula
 
 
 def _shifted(mode: Mode, sign: int, digits: int) -> str:
