@@ -4,12 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from closedform.derivation.abbreviations import abbreviations_step, names_in
 from closedform.derivation.canonical_steps import canonical_steps
 from closedform.derivation.resolvent_steps import resolvent_steps
 from closedform.derivation.result_steps import (
-    abbreviations_step,
     cautions_step,
-    names_in,
     outputs_step,
     solution_step,
     transition_step,

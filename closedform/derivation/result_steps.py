@@ -2,22 +2,17 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
-
 from closedform.algebra.surds import SurdSum
-from closedform.derivation.formulas import eigenvalue_formula, polynomial_formula
 from closedform.derivation.identities import printed_item
 from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
-from closedform.notation.expression import Call, Expression, Name, Number, number
+from closedform.notation.expression import Expression, Name
 from closedform.notation.plain import plain
 from closedform.response.amounts import surd_formula
-from closedform.response.names import NamedConstant, ResiduePart
 from closedform.response.response import LARGEST_WRITTEN_OUT, Response
-from closedform.response.sampling import constant_decimal, default_times, sampled
+from closedform.response.sampling import default_times, sampled
 from closedform.verification.record import VerificationRecord
 
 __all__ = [
-    "abbreviations_step",
     "cautions_step",
     "outputs_step",
     "solution_step",
@@ -82,43 +77,6 @@ def _function(name: str, t: Expression) -> Symbol:
     return Symbol("scalar", letter=name, argument=t)
 
 
-def abbreviations_step(response: Response, shown: frozenset[str], digits: int) -> Step | None:
-    """Define the constants that the printed formulas use, apart from roots and radicals."""
-    rows = [
-        _abbreviation(response, constant, digits)
-        for constant in response.closed_forms.constants
-        if isinstance(constant.definition, ResiduePart) and constant.name in shown
-    ]
-    if not rows:
-        return None
-    return Step("abbreviations", (), {"rows": rows}, ("solution",), "summary")
-
-
-def _abbreviation(response: Response, constant: NamedConstant, digits: int) -> dict[str, object]:
-    """C = weight · Re or Im of r(lambda)/p'(lambda) at a named root lambda."""
-    definition = constant.definition
-    if not isinstance(definition, ResiduePart):
-        raise TypeError("only amounts of modes are abbreviations")
-    mode = next(
-        mode
-        for modes in response.closed_forms.modes
-        for mode in modes
-        if mode.factor.p == definition.polynomial and mode.which == definition.which
-    )
-    factor = response.spectrum.factors.index(mode.factor) + 1
-    several = len(response.spectrum.factors) > 1
-    return {
-        "name": Name(constant.name),
-        "weight": number(definition.weight),
-        "part": definition.part,
-        "real": mode.kind == "real",
-        "numerator": polynomial_formula(response.field, definition.numerator, Name("lambda")),
-        "factor": str(factor) if several else "",
-        "at": eigenvalue_formula(mode),
-        "decimal": constant_decimal(constant, digits),
-    }
-
-
 def values_step(response: Response, digits: int) -> Step:
     """Tabulate certified values at the instants asked for, or at some that suit."""
     model = response.model
@@ -172,23 +130,3 @@ def verification_step(record: VerificationRecord) -> Step:
 def cautions_step() -> Step:
     """Say what the proof does not cover."""
     return Step("cautions", depth="summary")
-
-
-def names_in(expressions: Iterator[Expression]) -> frozenset[str]:
-    """Return every name that the formulas use."""
-    found: set[str] = set()
-    pending = list(expressions)
-    while pending:
-        expression = pending.pop()
-        match expression:
-            case Name(text):
-                found.add(text)
-            case Number():
-                pass
-            case Call(_, argument):
-                pending.append(argument)
-            case _:
-                for attribute in expression.__slots__:
-                    value = getattr(expression, attribute)
-                    pending += value if isinstance(value, tuple) else [value]
-    return frozenset(found)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Callable, Iterable, Mapping
+from collections.abc import Callable, Iterable
 from typing import Any
 
 from closedform.derivation.step import Side, Statement, Step, Symbol
@@ -81,15 +81,12 @@ def field(text: str) -> str:
     return rf"$\mathbb{{Q}}{roots}$"
 
 
-def amount(row: Mapping[str, Any]) -> Side:
-    """Return weight times the real or imaginary part of r(lambda)/p'(lambda)."""
-    at = Name("lambda")
-    index = (row["factor"],) if row["factor"] else ()
-    slope = Symbol("scalar", index, at, "p", order=1)
-    value: Side = Symbol("quotient", parts=(Symbol("scalar", (), at, "r"), slope))
-    if not row["real"]:
-        value = Symbol(f"{row['part']} part", parts=(value,))
-    return value if row["weight"] == number(1) else (row["weight"], value)
+def quotient(several: bool) -> Side:  # noqa: FBT001  called from templates only
+    """Return r(lambda)/p'(lambda), with an index on p if there are several factors."""
+    argument = Name("lambda")
+    above = Symbol("scalar", letter="r", argument=argument)
+    below = Symbol("scalar", ("i",) if several else (), argument, letter="p", order=1)
+    return Symbol("quotient", parts=(above, below))
 
 
 FILTERS: dict[str, Callable[..., Any]] = {
@@ -113,5 +110,5 @@ FUNCTIONS: dict[str, Callable[..., Any]] = {
     "exponential": exponential,
     "power": power,
     "pair": pair,
-    "amount": amount,
+    "quotient": quotient,
 }

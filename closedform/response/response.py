@@ -169,14 +169,19 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
             for contribution in contributions(modes_of_factor, term, row, column, book)
         ]
 
-    def formula(function: ExponentialMatrix, row: int) -> Expression:
-        return closed_form(parts(function, row, 0), model.time)
+    def column(function: ExponentialMatrix | None) -> tuple[Expression, ...]:
+        if function is None:
+            return ()
+        rows = range(function.shape[0])
+        return tuple(closed_form(parts(function, i, 0), model.time) for i in rows)
 
     n = len(model.states)
-    solution = tuple(formula(response.state, i) for i in range(n))
-    outputs: tuple[Expression, ...] = ()
-    if response.output is not None:
-        outputs = tuple(formula(response.output, i) for i in range(len(model.outputs)))
+    if n > LARGEST_WRITTEN_OUT:  # then the outputs are printed, and named first
+        outputs = column(response.output)
+        solution = column(response.state)
+    else:
+        solution = column(response.state)
+        outputs = column(response.output)
     needs_impulses = any(factor.degree > 2 for factor in factors)
     impulses = tuple(
         _impulse(response.field, factor, modes_of_factor, book, model.time)

@@ -157,7 +157,7 @@ def test_an_unknown_template_or_depth_is_refused() -> None:
 
 
 def test_a_step_without_a_part_is_named() -> None:
-    with pytest.raises(TemplateError, match="it has no file steps/tea.tex.j2"):
+    with pytest.raises(TemplateError, match=r"it has no file steps/tea\.tex\.j2"):
         render(Derivation("A", (Step("tea"),)))
 
 

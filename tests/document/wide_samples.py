@@ -211,21 +211,23 @@ def ten_named(*, several: bool = True) -> Derivation:
                 "abbreviations",
                 (),
                 {
+                    "several": several,
+                    "pairs": True,
+                    "reals": True,
                     "rows": [
                         {
-                            "name": Name(f"c_{k}"),
-                            "weight": q(2 if k % 2 else 1),
-                            "part": "imaginary",
-                            "real": k == 2,
-                            "numerator": add(
-                                *(prod(f"{k}/7", Power(LAM, q(m))) for m in range(2, 9))
-                            ),
-                            "factor": "1" if several else "",
+                            "numerator": None
+                            if k == 3
+                            else add(*(prod(f"{k}/7", Power(LAM, q(m))) for m in range(2, 9))),
+                            "factor": "1",
                             "at": prod(w, IMAGINARY_UNIT),
-                            "decimal": "0.1234567",
+                            "constants": [
+                                (Name(f"c_{k}"), "0.1234567"),
+                                None if k == 2 else (Name(f"d_{k}"), "-1.5e-9"),
+                            ],
                         }
                         for k, w in enumerate(omegas, start=1)
-                    ]
+                    ],
                 },
             ),
             checks(),
