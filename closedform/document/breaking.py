@@ -10,8 +10,6 @@ from __future__ import annotations
 from fractions import Fraction
 
 from closedform.derivation.step import Matrix, Side, Symbol
-from closedform.document.box import BINARY, Box, joined
-from closedform.document.formula import factors_of, formula, signed, terms_of
 from closedform.document.symbols import side_box
 from closedform.notation.expression import (
     Call,
@@ -22,6 +20,8 @@ from closedform.notation.expression import (
     Quotient,
     Sum,
 )
+from closedform.notation.latex.box import BINARY, Box, joined
+from closedform.notation.latex.formula import factors_of, formula, signed, terms_of
 
 __all__ = ["filled", "pieces"]
 

@@ -12,11 +12,11 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from closedform.derivation.step import Matrix, Side, Statement, Symbol
-from closedform.document.box import EM_PER_LINE, RELATION, Box
 from closedform.document.breaking import filled, pieces
 from closedform.document.matrices import ZERO, matrix_box, matrix_height, with_front
 from closedform.document.symbols import ANY_ROW, side_box
 from closedform.notation.expression import Expression, Product
+from closedform.notation.latex.box import EM_PER_LINE, RELATION, Box
 
 __all__ = ["Display", "displayed", "displayed_together", "fits"]
 

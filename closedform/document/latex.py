@@ -6,10 +6,10 @@ import re
 
 from closedform.derivation.step import Side, Statement
 from closedform.document.display import Display, displayed, fits
-from closedform.document.escape import escaped
-from closedform.document.names import name_box
 from closedform.document.symbols import side_box
 from closedform.notation.expression import Expression
+from closedform.notation.latex.escape import escaped
+from closedform.notation.latex.names import name_box
 
 __all__ = [
     "Display",

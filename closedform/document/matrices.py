@@ -6,8 +6,6 @@ from fractions import Fraction
 from math import lcm
 
 from closedform.derivation.step import Matrix
-from closedform.document.box import Box, Style, bracketed
-from closedform.document.formula import factors_of, formula, signed
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -18,6 +16,8 @@ from closedform.notation.expression import (
     Sum,
     number,
 )
+from closedform.notation.latex.box import Box, Style, bracketed
+from closedform.notation.latex.formula import factors_of, formula, signed
 
 __all__ = ["ZERO", "front_box", "matrix_box", "matrix_height", "with_front"]
 

@@ -7,10 +7,10 @@ from collections.abc import Callable, Iterable
 from typing import Any
 
 from closedform.derivation.step import Side, Statement, Step, Symbol
-from closedform.document.escape import escaped
 from closedform.document.latex import cell, decimal, inline, mixed
 from closedform.document.tables import decimal_tables
 from closedform.notation.expression import Call, Expression, Name, Power, Product, number
+from closedform.notation.latex.escape import escaped
 
 __all__ = ["FILTERS", "FUNCTIONS"]
 

@@ -40,10 +40,7 @@ from __future__ import annotations
 from collections.abc import Callable
 
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
-from closedform.document.box import BINARY, Box, Style, bracketed, joined, plain
-from closedform.document.formula import formula, signed
 from closedform.document.matrices import ZERO, matrix_box
-from closedform.document.names import letter_box, name_box, subscripted
 from closedform.notation.expression import (
     Expression,
     Name,
@@ -53,6 +50,9 @@ from closedform.notation.expression import (
     Sum,
     is_expression,
 )
+from closedform.notation.latex.box import BINARY, Box, Style, bracketed, joined, plain
+from closedform.notation.latex.formula import formula, signed
+from closedform.notation.latex.names import letter_box, name_box, subscripted
 
 __all__ = ["ANY_ROW", "KINDS", "side_box", "symbol_box"]
 

@@ -6,9 +6,9 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from closedform.derivation.step import Side
-from closedform.document.escape import escaped
 from closedform.document.latex import inline, split_decimal
 from closedform.document.symbols import side_box
+from closedform.notation.latex.escape import escaped
 
 __all__ = ["DecimalTable", "decimal_tables"]
 

@@ -22,6 +22,8 @@ from closedform.algebra.spectrum import Factor, Spectrum, spectrum_of
 from closedform.algebra.surds import SurdSum
 from closedform.model.model import Model
 from closedform.notation.expression import Expression, operations
+from closedform.notation.plain import plain
+from closedform.notation.shown import FormulaColumn, FormulaMatrix
 from closedform.response.closed_form import closed_form, fronted_matrix
 from closedform.response.modes import Contribution, Mode, contributions, modes_of
 from closedform.response.names import NameBook, NamedConstant, Radical, ResiduePart
@@ -94,19 +96,28 @@ class Response:
         return small and all(factor.degree <= 2 for factor in self.spectrum.factors)
 
     @property
-    def transition(self) -> tuple[tuple[Expression, ...], ...]:
+    def transition(self) -> FormulaMatrix:
         """The entries of e^(At) as formulas; empty beyond `LARGEST_WRITTEN_OUT` states."""
-        return self.closed_forms.transition
+        return FormulaMatrix(self.closed_forms.transition)
 
     @property
-    def solution(self) -> tuple[Expression, ...]:
+    def solution(self) -> FormulaColumn:
         """x(t) as one formula per state."""
-        return self.closed_forms.solution
+        return FormulaColumn(self.closed_forms.solution)
 
     @property
-    def outputs(self) -> tuple[Expression, ...]:
+    def outputs(self) -> FormulaColumn:
         """One formula per output."""
-        return self.closed_forms.outputs
+        return FormulaColumn(self.closed_forms.outputs)
+
+    def __str__(self) -> str:
+        """Return the solution, a line for each state."""
+        t = self.model.time
+        pairs = zip(self.model.states, self.solution, strict=True)
+        return "\n".join(f"{state}({t}) = {plain(formula)}" for state, formula in pairs)
+
+    def _repr_latex_(self) -> str:
+        return self.solution._repr_latex_()
 
     def transition_at(self, t: Fraction, digits: int = 30) -> list[list[arb]]:
         """Return balls for the entries of e^(At) at an instant, settled to `digits` digits."""
@@ -140,16 +151,16 @@ def respond(model: Model) -> Response:
 
 def written_out(response: Response) -> ClosedForms:
     """Return the formulas of a response, surd frequencies named where that is shorter."""
-    plain = _written(response, name_surds=False)
+    unnamed = _written(response, name_surds=False)
     if not any(
         mode.kind != "real"
         and isinstance(mode.frequency, SurdSum)
         and not mode.frequency.is_rational
-        for modes in plain.modes
+        for modes in unnamed.modes
         for mode in modes
     ):
-        return plain
-    return min(plain, _written(response, name_surds=True), key=lambda forms: forms.operations)
+        return unnamed
+    return min(unnamed, _written(response, name_surds=True), key=lambda forms: forms.operations)
 
 
 def _written(response: Response, *, name_surds: bool) -> ClosedForms:

@@ -2,7 +2,7 @@ from __future__ import annotations
 
 import pytest
 
-from closedform.document.names import is_long, name_box
+from closedform.notation.latex.names import is_long, name_box
 
 CASES = [
     ("x", "x"),

@@ -10,8 +10,8 @@ from __future__ import annotations
 
 import re
 
-from closedform.document.box import Box, Style, plain
-from closedform.document.escape import escaped
+from closedform.notation.latex.box import Box, Style, plain
+from closedform.notation.latex.escape import escaped
 
 __all__ = ["GREEK", "IMAGINARY", "is_long", "letter_box", "name_box", "subscripted"]
 

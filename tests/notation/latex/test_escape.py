@@ -6,7 +6,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from closedform.document.escape import LONGEST_WORD, escaped
+from closedform.notation.latex.escape import LONGEST_WORD, escaped
 
 CASES = [
     ("plain words", "plain words"),

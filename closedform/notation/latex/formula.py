@@ -9,8 +9,6 @@ from __future__ import annotations
 
 from fractions import Fraction
 
-from closedform.document.box import BINARY, Box, Style, bracketed, joined, plain
-from closedform.document.names import is_long, name_box
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -22,6 +20,8 @@ from closedform.notation.expression import (
     Quotient,
     Sum,
 )
+from closedform.notation.latex.box import BINARY, Box, Style, bracketed, joined, plain
+from closedform.notation.latex.names import is_long, name_box
 
 __all__ = ["factors_of", "formula", "front_glue", "signed", "terms_of"]
 

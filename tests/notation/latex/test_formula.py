@@ -5,8 +5,6 @@ from fractions import Fraction
 import pytest
 
 from closedform.derivation.step import IMAGINARY_UNIT
-from closedform.document.box import Style
-from closedform.document.formula import factors_of, formula, signed, terms_of
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -18,6 +16,8 @@ from closedform.notation.expression import (
     Sum,
     number,
 )
+from closedform.notation.latex.box import Style
+from closedform.notation.latex.formula import factors_of, formula, signed, terms_of
 from tests.document.making import T, add, exp, neg, prod, q, root
 
 DISPLAYED = [

@@ -1,0 +1,1 @@
+"""Formulas, names and text as LaTeX, with their widths."""

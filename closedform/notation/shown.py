@@ -1,0 +1,48 @@
+"""Results as they are handed to a user of the library: they show as mathematics."""
+
+from __future__ import annotations
+
+from closedform.notation.expression import Expression
+from closedform.notation.latex.formula import formula
+from closedform.notation.plain import plain
+
+__all__ = ["FormulaColumn", "FormulaMatrix"]
+
+
+class FormulaMatrix(tuple[tuple[Expression, ...], ...]):
+    """A matrix of formulas: a tuple of rows that prints in plain notation.
+
+    In a notebook it shows as typeset mathematics.
+    """
+
+    __slots__ = ()
+
+    def __str__(self) -> str:
+        texts = [[plain(entry) for entry in row] for row in self]
+        widths = [max(map(len, column)) for column in zip(*texts, strict=True)]
+        lines = (
+            "  ".join(text.ljust(width) for text, width in zip(row, widths, strict=True)).rstrip()
+            for row in texts
+        )
+        return "\n".join(f"[{line}]" for line in lines)
+
+    def _repr_latex_(self) -> str:
+        rows = [" & ".join(formula(entry).latex for entry in row) for row in self]
+        columns = "c" * (len(self[0]) if self else 1)
+        body = r" \\ ".join(rows)
+        return rf"$\displaystyle \left[\begin{{array}}{{{columns}}} {body} \end{{array}}\right]$"
+
+
+class FormulaColumn(tuple[Expression, ...]):
+    """A column of formulas: a tuple that prints in plain notation, a line each.
+
+    In a notebook it shows as typeset mathematics.
+    """
+
+    __slots__ = ()
+
+    def __str__(self) -> str:
+        return "\n".join(map(plain, self))
+
+    def _repr_latex_(self) -> str:
+        return FormulaMatrix((entry,) for entry in self)._repr_latex_()
