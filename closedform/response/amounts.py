@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from fractions import Fraction
 from math import gcd, isqrt, lcm
 
-from closedform.algebra.surds import SurdSum
+from closedform.algebra.surds import SurdSum, square_part
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -56,9 +56,18 @@ def square_root_of_surd(value: SurdSum) -> SurdSum | None:
 
 
 def radical_formula(square: SurdSum) -> Expression:
-    """Return the formula of sqrt(square), without a nested root where there is a short form."""
+    """Return the formula of sqrt(square): no nested root where there is a short form.
+
+    Else square factors are drawn out: 20 sqrt(2 - sqrt(2)).
+    """
     root = square_root_of_surd(square)
-    return Call("sqrt", surd_formula(square)) if root is None else surd_formula(root)
+    if root is not None:
+        return surd_formula(root)
+    content = _rational_content([square])
+    whole, _ = square_part(content.numerator * content.denominator)
+    outside = Fraction(whole, content.denominator)
+    inside = square * SurdSum.rational(1 / outside**2)
+    return weighted(SurdSum.rational(outside), [Call("sqrt", surd_formula(inside))], [])
 
 
 def surd_formula(value: SurdSum) -> Expression:
@@ -141,16 +150,21 @@ def content_of(values: Sequence[SurdSum]) -> tuple[SurdSum, ...]:
 
     The others are 1/denominator, the rational content, and that times a common root.
     """
-    coefficients = [c for value in values for _, c in value.terms]
-    bottom = lcm(*(c.denominator for c in coefficients))
-    top = gcd(*(c.numerator for c in coefficients))
-    found = [Fraction(1), Fraction(1, bottom), Fraction(top, bottom)]
+    content = _rational_content(values)
+    found = [Fraction(1), Fraction(1, content.denominator), content]
     contents = [SurdSum.rational(c) for c in dict.fromkeys(found)]
     radicands = {value.terms[0][0] for value in values if len(value.terms) == 1}
     if len(radicands) == 1 and radicands != {1} and all(len(v.terms) == 1 for v in values):
         root = SurdSum.of({radicands.pop(): Fraction(1)})
         contents += [content * root for content in contents]
     return tuple(contents)
+
+
+def _rational_content(values: Sequence[SurdSum]) -> Fraction:
+    """The largest rational number of which all coefficients are whole multiples."""
+    coefficients = [c for value in values for _, c in value.terms]
+    bottom = lcm(*(c.denominator for c in coefficients))
+    return Fraction(gcd(*(int(c * bottom) for c in coefficients)), bottom)
 
 
 def _surd(radicand: int) -> Expression:
