@@ -6,6 +6,8 @@ imported when it runs, so that ``closedform --help`` answers at once.
 
 from __future__ import annotations
 
+import signal
+import sys
 from collections.abc import Callable
 from pathlib import Path
 from typing import Annotated, Literal
@@ -36,7 +38,13 @@ Depth = Literal["summary", "working", "full"]
 def main() -> None:
     """Run the command line of this process and exit with its status."""
     prepare_streams()
+    signal.signal(signal.SIGTERM, _leave)
     app(prog_name="closedform")
+
+
+def _leave(number: int, _frame: object) -> None:
+    """End as by an error: the terminal is put right, TeX is ended, no part of a file stays."""
+    sys.exit(128 + number)
 
 
 def _version(asked: bool) -> None:  # noqa: FBT001 - the value of a flag, handed in by position

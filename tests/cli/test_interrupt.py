@@ -47,9 +47,13 @@ def test_a_solution_in_progress_stops(tmp_path: Path, big: Path) -> None:
 
 @pytest.mark.skipif(not Path("/proc/self").exists(), reason="there is no /proc")
 @pytest.mark.usefixtures("tank")
-def test_typesetting_in_progress_stops_and_takes_tex_with_it(tmp_path: Path) -> None:
-    tools = tmp_path / "tools"
+@pytest.mark.parametrize(("sign", "status"), [(signal.SIGINT, 130), (signal.SIGTERM, 143)])
+def test_typesetting_in_progress_stops_and_takes_tex_with_it(
+    tmp_path: Path, sign: signal.Signals, status: int
+) -> None:
+    tools, scratch = tmp_path / "tools", tmp_path / "scratch"
     tools.mkdir()
+    scratch.mkdir()
     engine = tools / "pdflatex"
     engine.write_text(
         f"#!{sys.executable}\n"
@@ -59,14 +63,19 @@ def test_typesetting_in_progress_stops_and_takes_tex_with_it(tmp_path: Path) -> 
         encoding="utf-8",
     )
     engine.chmod(0o755)
-    terminal = Terminal("writeup", "tank.toml", "--pdf", cwd=tmp_path, PATH=str(tools))
+    terminal = Terminal(
+        "writeup", "tank.toml", "--pdf", cwd=tmp_path, PATH=str(tools), TMPDIR=str(scratch)
+    )
     terminal.read_until("tank: typesetting")
     while not (tmp_path / "pid").exists() or not (tmp_path / "pid").read_text():
         assert terminal.process.poll() is None
-    terminal.process.send_signal(signal.SIGINT)
-    assert terminal.finish() == 130
-    assert [line for line in terminal.lines if line][-1] == STOPPED
+    terminal.process.send_signal(sign)
+    assert terminal.finish() == status
+    assert terminal.raw.rindex("\x1b[?25l") < terminal.raw.rindex("\x1b[?25h")
+    shown = [line for line in terminal.lines if line]
+    assert shown == ([STOPPED] if sign == signal.SIGINT else [])
     assert everything(tmp_path / "out") == ["tank.record.json", "tank.tex"]
+    assert everything(scratch) == []
     pid = int((tmp_path / "pid").read_text())
     for _ in range(500):  # the system may take a moment to end what was killed
         if not runs(pid):
