@@ -26,7 +26,7 @@ app = typer.Typer(
     "3 something outside is missing, such as a TeX engine.",
     no_args_is_help=True,
     add_completion=False,
-    rich_markup_mode=None,  # drawn help takes three times as long to appear
+    rich_markup_mode=None,  # drawn help takes twice as long to appear
     pretty_exceptions_enable=False,  # a fault of the program shows as Python shows it
     context_settings={"help_option_names": ["--help", "-h"]},
 )
