@@ -26,6 +26,7 @@ _IDENTITIES: dict[str, tuple[Side, ...]] = {
     "P e^(Jt) P^(-1) = e^(At)": ((_P, Symbol("exponential", letter="J"), _INVERSE), _EXP),
 }
 _WORDS = {
+    "A and x0 as stated": "the model's numbers",
     "y = C x": "outputs",
     "det e^(At) = e^(tr(A) t)": "determinant of the transition matrix",
     "e^(At), numbers": "transition matrix, in numbers",

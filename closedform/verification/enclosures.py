@@ -11,11 +11,13 @@ from fractions import Fraction
 from typing import Any
 
 import mpmath
-from flint import acb_mat, arb, arb_mat, ctx
+from flint import acb, acb_mat, arb, arb_mat, ctx
 
 from closedform.algebra.enclosure import ball_of, enclosed_to
+from closedform.algebra.spectrum import Factor
+from closedform.algebra.surds import SurdSum
 from closedform.notation import enclose, plain, read_formula
-from closedform.notation.expression import Expression
+from closedform.notation.expression import Expression, Product
 from closedform.response.names import constant_values
 from closedform.response.response import Response
 from closedform.verification.record import Check
@@ -24,7 +26,9 @@ __all__ = [
     "ball_check",
     "ball_exponentials",
     "determinant_ball_check",
+    "eigenvalue_check",
     "formula_check",
+    "impulse_check",
     "mpmath_check",
     "trial_times",
 ]
@@ -68,6 +72,62 @@ def ball_check(response: Response, references: References) -> Check:
         if fault is not None:
             return Check(item, "refuted", f"entry {fault} differs at t = {t}")
     return Check(item, "enclosed", _agreed(references, "the matrix exponential of ball arithmetic"))
+
+
+def eigenvalue_check(response: Response) -> Check:
+    """The numbers and names in which eigenvalues are written, against isolated roots."""
+    item = "eigenvalues as written"
+    forms = response.closed_forms
+    with ctx.workprec(64 + 5 * DIGITS):
+        values = constant_values(forms.constants)
+
+        def ball(number: SurdSum | str | None) -> arb:
+            if number is None:
+                return arb(0)
+            return values[number] if isinstance(number, str) else ball_of(number)
+
+        for factor, modes in zip(response.spectrum.factors, forms.modes, strict=True):
+            roots = factor.roots.enclosures()
+            if sum(1 if mode.kind == "real" else 2 for mode in modes) != factor.degree:
+                return Check(item, "refuted", "some eigenvalues are missing, or said twice")
+            for mode in modes:
+                rate, turn = ball(mode.rate), ball(mode.frequency)
+                written = acb(rate, turn) if mode.kind == "circular" else acb(rate + turn)
+                if not written.overlaps(roots[mode.which - 1]):
+                    return Check(item, "refuted", f"{written} is no root of its factor")
+                mirrored = acb(rate, -turn) if mode.kind == "circular" else acb(rate - turn)
+                if not any(mirrored.overlaps(root) for root in roots):
+                    return Check(item, "refuted", f"{mirrored} is no root of its factor")
+    return Check(item, "enclosed", "each lies in the ball of its own isolated root")
+
+
+def impulse_check(response: Response, times: tuple[Fraction, ...]) -> Check:
+    """Each g is read back, and is the corner of the exponential of a companion matrix."""
+    item = "functions g as written"
+    forms = response.closed_forms
+    names = frozenset({response.model.time, *(c.name for c in forms.constants)})
+    for number, (factor, impulse) in enumerate(
+        zip(response.spectrum.factors, forms.impulses, strict=True), start=1
+    ):
+        if impulse is None:
+            continue
+        parsed = read_formula(plain(impulse), names=names)
+        for t in times:
+            with ctx.workprec(64 + 5 * DIGITS):
+                values = {**constant_values(forms.constants), response.model.time: ball_of(t)}
+                expected = _companion_corner(response, factor, t)
+                if not enclose(parsed, values).overlaps(expected):
+                    return Check(item, "refuted", f"g_{number} differs at t = {t}")
+    return Check(item, "enclosed", _agreed(times, "the exponential of the companion matrix"))
+
+
+def _companion_corner(response: Response, factor: Factor, t: Fraction) -> arb:
+    """e^(Ct) in row 1, last column: the solution of p(d/dt) g = 0 that starts as t^(d-1)/(d-1)!."""
+    d = factor.degree
+    coefficients = [response.field.enclose(c) for c in reversed(factor.polynomial[1:])]
+    rows = [[arb(int(k == i + 1)) for k in range(d)] for i in range(d - 1)]
+    companion = arb_mat([*rows, [-c for c in coefficients]])
+    return acb_mat(companion * ball_of(t)).exp()[0, d - 1].real
 
 
 def formula_check(response: Response, references: References) -> Check:
@@ -146,6 +206,11 @@ def _written(response: Response) -> Iterator[tuple[str, Expression]]:
     for i, row in enumerate(forms.transition, start=1):
         for k, formula in enumerate(row, start=1):
             yield f"entry ({i}, {k}) of e^(At)", formula
+    front, rows = forms.fronted_transition
+    for i, row in enumerate(rows, start=1):
+        for k, formula in enumerate(row, start=1):
+            whole = formula if front is None else Product((front, formula))
+            yield f"entry ({i}, {k}) of e^(At), factor in front", whole
     for state, formula in zip(model.states, forms.solution, strict=True):
         yield f"state {state}", formula
     for output, formula in zip(model.outputs, forms.outputs, strict=True):

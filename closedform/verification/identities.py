@@ -23,9 +23,28 @@ __all__ = [
     "differential_equation_check",
     "initial_value_check",
     "inverse_check",
+    "model_check",
     "output_check",
     "routes_check",
 ]
+
+
+def model_check(response: Response) -> Check:
+    """A, x0 and the weights of the outputs are those of the model."""
+    item = "A and x0 as stated"
+    field, model = response.field, response.model
+    stated = field.matrix([[field.scalar(entry) for entry in row] for row in model.matrix])
+    start = field.matrix([[field.scalar(entry)] for entry in model.initial])
+    for name, found, expected in (
+        ("the matrix", response.matrix, stated),
+        ("the initial state", response.initial, start),
+    ):
+        fault = _first_nonzero(found - expected)
+        if fault is not None:
+            return Check(item, "refuted", f"entry {fault} of {name} is not the one stated")
+    if (response.output is None) != (not model.outputs):
+        return Check(item, "refuted", "the outputs are not the ones stated")
+    return Check(item, "proved", "compared with the model: every number is the one stated")
 
 
 def characteristic_polynomial_check(response: Response) -> Check:
@@ -41,7 +60,7 @@ def characteristic_polynomial_check(response: Response) -> Check:
     value = polynomial_of_matrix(field, product, response.matrix)
     fault = _first_nonzero(value)
     if fault is not None:
-        return Check(item, "refuted", f"entry {fault} of c(A) is not zero")
+        return Check(item, "refuted", f"entry {fault} of p(A) is not zero")
     return Check(
         item,
         "proved",
@@ -143,6 +162,8 @@ def inverse_check(response: Response) -> Check:
     """The rows of P^(-1) in print: P P^(-1) = I, as a sum over chains and their eigenvalues."""
     item = "P P^(-1) = I"
     n = response.matrix.shape[0]
+    if response.jordan.basis.rank() != n:
+        return Check(item, "refuted", "the chains do not span the space: P has no inverse")
     total = response.field.zeros(n, n)
     for chain, rows in zip(response.jordan.chains, response.jordan.left_chains, strict=True):
         slope = chain.factor.p.diff()
@@ -167,11 +188,22 @@ def routes_check(response: Response) -> Check:
     for chain in response.jordan.chains:
         p = chain.factor.p
         terms = [term for term in response.exponential.terms if term.factor.p == p]
+        others = [term for term in response.exponential.terms if term.factor.p != p]
         if len(terms) != 1:
             return Check(item, "refuted", "the two routes have different eigenvalues")
         for power in range(chain.size * chain.factor.degree):
             vector = response.jordan.basis[:, column].to_dense()
             column += 1
+            for term in others:
+                for residue in term.residues:
+                    fault = _first_nonzero_over_roots(residue.before(vector))
+                    if fault is not None:
+                        return Check(
+                            item,
+                            "refuted",
+                            f"row {fault[0]} of the image of basis vector {column} takes part in "
+                            "modes of another factor",
+                        )
             along = [(c * p.diff()).rem(p) for c in chain.coordinates(power)]
             for j, residue in enumerate(terms[0].residues):
                 difference = residue.before(vector)

@@ -7,7 +7,9 @@ from closedform.verification.enclosures import (
     ball_check,
     ball_exponentials,
     determinant_ball_check,
+    eigenvalue_check,
     formula_check,
+    impulse_check,
     mpmath_check,
     trial_times,
 )
@@ -18,6 +20,7 @@ from closedform.verification.identities import (
     differential_equation_check,
     initial_value_check,
     inverse_check,
+    model_check,
     output_check,
     routes_check,
     state_check,
@@ -31,6 +34,7 @@ def prove(response: Response) -> tuple[Check, ...]:
     """Return the exact part of the record: every identity, by arithmetic in fields."""
     a, n = response.matrix, response.matrix.shape[0]
     return (
+        model_check(response),
         characteristic_polynomial_check(response),
         differential_equation_check("d/dt e^(At) - A e^(At) = 0", response.exponential, a),
         initial_value_check("e^(A0) = I", response.exponential, response.field.identity(n)),
@@ -53,6 +57,8 @@ def verify(response: Response) -> VerificationRecord:
         (
             *prove(response),
             ball_check(response, references),
+            eigenvalue_check(response),
+            *([impulse_check(response, times)] if any(response.closed_forms.impulses) else []),
             formula_check(response, references),
             determinant_ball_check(response, times),
             mpmath_check(response, times),
