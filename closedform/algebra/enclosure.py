@@ -20,6 +20,8 @@ __all__ = [
 ]
 
 _MOST_BITS = 1 << 16
+_LARGEST_PLAIN = 10**9
+_SMALLEST_FIXED = -5
 
 
 def ball_of(value: SurdSum | Fraction) -> arb:
@@ -79,6 +81,8 @@ def exact_decimal(value: Fraction, digits: int) -> str:
     """
     context = Context(prec=digits, rounding=ROUND_HALF_EVEN)
     quotient = context.divide(Decimal(value.numerator), Decimal(value.denominator))
+    if value.denominator == 1 and quotient == value.numerator and abs(value) < _LARGEST_PLAIN:
+        return str(value.numerator)
     return _text(quotient.normalize(context))
 
 
@@ -110,12 +114,15 @@ def _decimal_order(ball: arb) -> int:
 
 
 def _text(value: Decimal) -> str:
-    """Fixed point for numbers of everyday size, otherwise with a power of ten."""
+    """Fixed point for numbers of everyday size, otherwise with a power of ten.
+
+    No digit is added that is not settled: 123000 with three digits is 1.23e5.
+    """
     if value == 0:
         return "0"
-    if -5 <= value.adjusted() <= 8 and value.adjusted() - len(value.as_tuple().digits) < 12:
+    sign, figures, exponent = value.as_tuple()
+    if value.adjusted() >= _SMALLEST_FIXED and int(exponent) <= 0:
         return format(value, "f")
-    sign, figures, _ = value.as_tuple()
     text = "".join(map(str, figures))
     mantissa = text[0] + ("." + text[1:] if len(text) > 1 else "")
     return f"{'-' if sign else ''}{mantissa}e{value.adjusted()}"

@@ -50,11 +50,12 @@ def _steps(response: Response, record: VerificationRecord, digits: int) -> Itera
         shown += canonical_steps(response)
     else:
         shown += resolvent_steps(response)
-    if forms.transition and not forms.names_amounts:
+    has_transition = bool(forms.transition) and not forms.names_amounts
+    if has_transition:
         shown.append(
             transition_step(response, is_complex=any(step.kind == "real_form" for step in shown))
         )
-    shown.append(solution_step(response))
+    shown.append(solution_step(response, has_transition=has_transition))
     if response.model.outputs:
         shown.append(outputs_step(response))
     yield from shown

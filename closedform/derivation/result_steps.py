@@ -46,7 +46,7 @@ def transition_step(response: Response, *, is_complex: bool) -> Step:
     )
 
 
-def solution_step(response: Response) -> Step:
+def solution_step(response: Response, *, has_transition: bool) -> Step:
     """State x(t), one formula for each state that is shown."""
     t = Name(response.model.time)
     model, forms = response.model, response.closed_forms
@@ -58,7 +58,8 @@ def solution_step(response: Response) -> Step:
         for state, formula in zip(model.states[:shown], forms.solution, strict=False)
     ]
     facts = {"shown": shown, "n": len(model.states)}
-    return Step("solution", tuple(statements), facts, ("transition",), "summary")
+    rests_on = ("transition",) if has_transition else ("resolvent",)
+    return Step("solution", tuple(statements), facts, rests_on, "summary")
 
 
 def outputs_step(response: Response) -> Step:

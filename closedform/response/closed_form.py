@@ -208,7 +208,7 @@ def _divided(group: _Group, front: SurdSum) -> _Group:
         return group
     terms = tuple(
         _Term(
-            Amount(term.amount.value / front, term.amount.name, term.amount.over),
+            replace(term.amount, value=term.amount.value / front),
             term.power,
             term.kernel,
         )
@@ -239,8 +239,7 @@ def _signed_product(front: SurdSum, outside: list[Expression], inside: Expressio
 
 def _written_term(term: _Term, outside: list[Expression]) -> Expression:
     factors: list[Expression] = []
-    if term.amount.name is not None:
-        factors.append(Name(term.amount.name))
+    factors += [Name(name) for name in (term.amount.name, term.amount.times) if name is not None]
     if term.power is not None:
         factors.append(term.power)
     factors += outside

@@ -21,7 +21,8 @@ from closedform.algebra.parts import vanishing_parts
 from closedform.algebra.roots import enclosed_roots, rounded
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
-from closedform.response.amounts import radical_formula, square_root_of_surd
+from closedform.notation.expression import Name, operations
+from closedform.response.amounts import radical_formula, square_root_of_surd, weighted
 from closedform.response.names import NameBook, Radical, ResiduePart, RootPart
 
 __all__ = ["Amount", "Contribution", "Mode", "contributions", "modes_of"]
@@ -35,12 +36,13 @@ _SORTING_BITS = 192
 class Amount:
     """An exact factor of a mode: a surd sum, or plus or minus a named constant.
 
-    `value` multiplies the constant `name` if there is one; `over` names a frequency that
-    divides it.
+    `value` multiplies the constant `name` if there is one; `times` names a frequency that
+    multiplies it, `over` one that divides it.
     """
 
     value: SurdSum
     name: str | None = None
+    times: str | None = None
     over: str | None = None
 
     @property
@@ -192,11 +194,21 @@ def _named_modes(factor: Factor, book: NameBook, number: int) -> tuple[Mode, ...
             modes.append(Mode(factor, "real", name, None, which))
             number += 1
         else:
-            rate = book.name_of("alpha", RootPart(field, p, which, "real"))
+            rate = _rate(factor, which, book)
             frequency = book.name_of("omega", RootPart(field, p, which, "imaginary"))
             modes.append(Mode(factor, "circular", rate, frequency, which))
             number += 2
     return tuple(modes)
+
+
+def _rate(factor: Factor, which: int, book: NameBook) -> SurdSum | str:
+    """The real part of a root: the centre a where Re(lambda - a) = 0, else a named number."""
+    field, p, centre = factor.roots.field, factor.p, factor.roots.centre
+    offset = field.polynomial([field.domain.one, -centre]) * p.diff()
+    on_centre, _ = vanishing_parts(field, p, which, offset.rem(p))
+    if on_centre:
+        return field.surds(centre)
+    return book.name_of("alpha", RootPart(field, p, which, "real"))
 
 
 def _amounts(
@@ -212,18 +224,25 @@ def _amounts(
     if roots.form == "quadratic":
         even = entry.nth(1)
         odd = field.surds(entry.nth(0) + roots.centre * even) * scale
-        return Amount(field.surds(even) * scale), _over(odd, mode.frequency)
+        square = field.surds(roots.discriminant)
+        square = -square if mode.kind == "circular" else square
+        return Amount(field.surds(even) * scale), _over(odd, mode, square)
     if roots.form == "even" and _has_surd_squares(mode.factor):
         return _even_amounts(mode, entry, scale)
     return _named_amounts(mode, entry, weight, book)
 
 
-def _over(value: SurdSum, frequency: SurdSum | str | None) -> Amount:
+def _over(value: SurdSum, mode: Mode, square: SurdSum) -> Amount:
+    """Return value/w for the frequency w of a mode, or (value/w^2) w where that is shorter."""
     if value.is_zero:
         return ZERO
-    if isinstance(frequency, SurdSum):
-        return Amount(value / frequency)
-    return Amount(value, over=frequency)
+    if isinstance(mode.frequency, SurdSum):
+        return Amount(value / mode.frequency)
+    name = [Name(str(mode.frequency))]
+    multiple = value / square
+    if operations(weighted(multiple, name, [])) <= operations(weighted(value, [], name)):
+        return Amount(multiple, times=mode.frequency)
+    return Amount(value, over=mode.frequency)
 
 
 def _even_amounts(mode: Mode, entry: Polynomial, scale: SurdSum) -> tuple[Amount, Amount]:
@@ -235,7 +254,7 @@ def _even_amounts(mode: Mode, entry: Polynomial, scale: SurdSum) -> tuple[Amount
     slope = (mu + mu + field.surds(_squares(mode.factor).nth(1))).inverse() * scale
     even = (r[1] + r[3] * mu) * slope
     odd = (r[0] + r[2] * mu) * slope
-    return Amount(even), _over(odd, mode.frequency)
+    return Amount(even), _over(odd, mode, -mu if mode.kind == "circular" else mu)
 
 
 def _named_amounts(

@@ -41,7 +41,7 @@ def prove(response: Response) -> tuple[Check, ...]:
         differential_equation_check("x' - A x = 0", response.state, a),
         initial_value_check("x(0) = x0", response.state, response.initial),
         state_check(response),
-        *([output_check(response)] if response.output is not None else []),
+        *([output_check(response)] if response.model.outputs or response.output else []),
         chain_check(response),
         *([inverse_check(response)] if response.has_chains_in_print else []),
         routes_check(response),
