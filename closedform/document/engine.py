@@ -171,6 +171,7 @@ def _end(process: subprocess.Popen[bytes]) -> None:
         os.killpg(process.pid, signal.SIGKILL)
     else:
         process.kill()
+    process.wait()  # its folder is about to be removed
 
 
 def _text(log: Path) -> str:

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from importlib import resources
 from importlib.resources.abc import Traversable
 from pathlib import Path
-from typing import TYPE_CHECKING, get_args
+from typing import TYPE_CHECKING, TypeVar, get_args
 
 from closedform.derivation.step import Depth, Derivation, Symbol
 from closedform.document.latex import fits
@@ -17,12 +18,20 @@ from closedform.notation.expression import Name
 if TYPE_CHECKING:
     from jinja2 import BaseLoader, Environment
 
-__all__ = ["DEPTHS", "TemplateError", "UnknownDepthError", "render", "templates_folder"]
+__all__ = [
+    "DEPTHS",
+    "TemplateError",
+    "UnknownDepthError",
+    "check_template",
+    "render",
+    "templates_folder",
+]
 
 DEPTHS: tuple[str, ...] = get_args(Depth)
 """From little to all.  In full, every part also names what it rests on."""
 
 MAIN = "writeup.tex.j2"
+_T = TypeVar("_T")
 LONGEST_FOOT = 60
 
 
@@ -47,7 +56,8 @@ class TemplateError(InputError):
     def __str__(self) -> str:
         place = self.template if self.line is None else f"{self.template}, line {self.line}"
         return (
-            f"{place}: {self.reason} Correct the template, or name the one that is shipped: latex."
+            f"{place}: {self.reason} Name the template that is shipped, latex, or a folder whose "
+            "files take the place of its own."
         )
 
 
@@ -56,6 +66,16 @@ def templates_folder() -> Traversable:
     package = resources.files("closedform")
     inside = package / "templates"
     return inside if inside.is_dir() else Path(str(package)).parent / "templates"
+
+
+def check_template(template: str | Path) -> None:
+    """Find and read the main file of a template, so that a wrong name is told at once.
+
+    Raises:  TemplateError if it is not there or not valid.
+    """
+    _answered(
+        template, lambda: _environment(_loader(str(template)), References()).get_template(MAIN)
+    )
 
 
 def render(
@@ -70,7 +90,6 @@ def render(
     """
     if depth not in DEPTHS:
         raise UnknownDepthError(depth)
-    import jinja2
 
     references = References()
     environment = _environment(_loader(str(template)), references)
@@ -85,11 +104,22 @@ def render(
         "form": Symbol("matrix", ("R",) if "real_form" in kinds else (), letter="J"),
         "foot": _shortened(derivation.title),
     }
-    try:
+
+    def twice() -> str:
         main = environment.get_template(MAIN)
         main.render(values)
         references.next_pass()
         return main.render(values)
+
+    return _answered(template, twice)
+
+
+def _answered(template: str | Path, work: Callable[[], _T]) -> _T:
+    """Return what `work` gives; what goes wrong in a template is a `TemplateError`."""
+    import jinja2
+
+    try:
+        return work()
     except jinja2.TemplateNotFound as error:
         raise TemplateError(str(template), None, f"it has no file {error.name}.") from error
     except jinja2.TemplateSyntaxError as error:
