@@ -110,10 +110,14 @@ def operations(expression: Expression) -> int:
     unless a number follows, whose sign it is: ``-3*t`` is one multiplication.
     """
     match expression:
-        case Number(value):
-            return int(value.denominator != 1)
         case Name():
             return 0
+        case Number(value):
+            return int(value.denominator != 1)
+        case Call(_, argument):
+            return 1 + operations(argument)
+        case Product(factors):
+            return sum(map(operations, factors)) + len(factors) - 1
         case Negation(operand):
             return operations(operand) + (not _starts_with_number(operand))
         case Sum(terms):
@@ -122,12 +126,8 @@ def operations(expression: Expression) -> int:
                 for i, term in enumerate(terms)
             )
             return inside + len(terms) - 1
-        case Product(factors):
-            return sum(map(operations, factors)) + len(factors) - 1
         case Quotient(above, below) | Power(above, below):
             return 1 + operations(above) + operations(below)
-        case Call(_, argument):
-            return 1 + operations(argument)
 
 
 def _starts_with_number(expression: Expression) -> bool:

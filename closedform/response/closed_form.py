@@ -136,12 +136,16 @@ def _surd(value: SurdSum | str | None) -> SurdSum:
 
 
 def _splits(contribution: Contribution) -> bool:
-    """Whether cosh and sinh can be written as exponentials with surd rates."""
+    """Whether exponentials with surd rates are worth a try in place of cosh and sinh.
+
+    They are shorter only where one of the pair drops out: c cosh + c sinh = c e^(w t).
+    """
     mode = contribution.mode
-    return (
-        mode.kind == "hyperbolic"
-        and isinstance(mode.rate, SurdSum)
-        and isinstance(mode.frequency, SurdSum)
+    if mode.kind != "hyperbolic" or isinstance(mode.rate, str):
+        return False
+    return isinstance(mode.frequency, SurdSum) and any(
+        not even.is_zero and even.value in (odd.value, -odd.value)
+        for even, odd in contribution.amounts
     )
 
 
