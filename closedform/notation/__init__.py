@@ -1,11 +1,22 @@
-"""Formulas: reading them from plain text, writing them, and their values."""
+"""Formulas: reading them from plain text, writing them, and their values.
 
-from closedform.notation.evaluation import enclose
-from closedform.notation.exact import exact_value
-from closedform.notation.linear import linear_combination
+`plain` is here at once: it is light, and a module of the room has its name.  The rest is
+imported when it is first asked for, so that a formula tree or a symbol costs no parser.
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import TYPE_CHECKING
+
 from closedform.notation.plain import plain
-from closedform.notation.reader import read_formula
-from closedform.notation.surd_formula import surd_expression
+
+if TYPE_CHECKING:
+    from closedform.notation.evaluation import enclose
+    from closedform.notation.exact import exact_value
+    from closedform.notation.linear import linear_combination
+    from closedform.notation.reader import read_formula
+    from closedform.notation.surd_formula import surd_expression
 
 __all__ = [
     "enclose",
@@ -15,3 +26,18 @@ __all__ = [
     "read_formula",
     "surd_expression",
 ]
+
+_HOMES = {
+    "enclose": "closedform.notation.evaluation",
+    "exact_value": "closedform.notation.exact",
+    "linear_combination": "closedform.notation.linear",
+    "read_formula": "closedform.notation.reader",
+    "surd_expression": "closedform.notation.surd_formula",
+}
+
+
+def __getattr__(name: str) -> object:
+    """Import a public name when it is first asked for."""
+    if name not in _HOMES:
+        raise AttributeError(f"module 'closedform.notation' has no attribute {name!r}")
+    return getattr(import_module(_HOMES[name]), name)
