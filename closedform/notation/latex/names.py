@@ -13,7 +13,15 @@ import re
 from closedform.notation.latex.box import Box, Style, plain
 from closedform.notation.latex.escape import escaped
 
-__all__ = ["GREEK", "IMAGINARY", "is_long", "letter_box", "name_box", "subscripted"]
+__all__ = [
+    "GREEK",
+    "IMAGINARY",
+    "is_long",
+    "letter_box",
+    "name_box",
+    "printed_key",
+    "subscripted",
+]
 
 GREEK_NAMES = (
     "alpha beta gamma delta epsilon varepsilon zeta eta theta vartheta iota kappa "
@@ -21,8 +29,10 @@ GREEK_NAMES = (
     "psi omega Gamma Delta Theta Lambda Xi Pi Sigma Upsilon Phi Psi Omega"
 )
 GREEK = {name: f"\\{name}" for name in GREEK_NAMES.split()}
-GREEK |= {"lamda": r"\lambda", "omicron": "o"}
-"""Greek letters by name; `lamda` is the spelling Python users need for `lambda`."""
+"""Greek letters by name."""
+
+OTHER_SPELLINGS = {"lamda": "lambda", "omicron": "o"}
+"""`lamda` is the spelling Python users need for `lambda`; an omicron looks like an o."""
 
 IMAGINARY = "@i"
 UP_TO = (
@@ -76,10 +86,37 @@ def letter_box(text: str, style: Style = Style.DISPLAY, *, bold: bool = False) -
     return plain(rf"\boldsymbol{{{inner}}}" if bold else inner, width, style)
 
 
+def _parts(text: str) -> tuple[str, tuple[str, ...], str] | None:
+    """Return base, indices and primes of a name as they are printed; None for other text."""
+    match = NAME.fullmatch(text)
+    if match is None:
+        return None
+    words = [match["base"], match["digits"], *match["rest"].split("_")]
+    base, *indices = (OTHER_SPELLINGS.get(word, word) for word in words if word)
+    return base, tuple(indices), match["primes"]
+
+
+def printed_key(text: str) -> str:
+    """Return a key that two names share exactly if they are printed alike.
+
+    For a name it is the name's plainest spelling, an underscore before each index.
+
+    >>> printed_key("x1"), printed_key("x_1"), printed_key("lamda")
+    ('x_1', 'x_1', 'lambda')
+    """
+    if text == IMAGINARY:
+        return text
+    parts = _parts(text)
+    if parts is None:
+        return letter_box(text).latex  # its backslash keeps it apart from every name
+    base, indices, primes = parts
+    return "_".join([base, *indices]) + primes
+
+
 def is_long(text: str) -> bool:
     """Say whether the name's base is set upright as a word, so that it needs space around."""
-    match = NAME.fullmatch(text)
-    base = match["base"] if match else text
+    parts = _parts(text)
+    base = parts[0] if parts else text
     return len(base) > 1 and base not in GREEK and base != IMAGINARY
 
 
@@ -90,11 +127,9 @@ def name_box(text: str, style: Style = Style.DISPLAY, extra: tuple[str, ...] = (
     """
     if text == IMAGINARY:
         return plain(r"\mathrm{i}", 0.3, style)
-    match = NAME.fullmatch(text)
-    if match is None:
+    parts = _parts(text)
+    if parts is None:
         return subscripted(letter_box(text, style), extra, style)
-    indices = [match["digits"], *match["rest"].split("_"), *extra]
-    base = letter_box(match["base"], style)
-    box = subscripted(base, tuple(index for index in indices if index), style)
-    primes = match["primes"]
+    base, indices, primes = parts
+    box = subscripted(letter_box(base, style), (*indices, *filter(None, extra)), style)
     return Box(box.latex + primes, box.width + 0.3 * len(primes) * style.scale, box.height)
