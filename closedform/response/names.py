@@ -14,6 +14,7 @@ from closedform.algebra.field import BaseField, Polynomial
 from closedform.algebra.roots import enclosed_roots
 from closedform.notation.evaluation import enclose
 from closedform.notation.expression import Expression
+from closedform.notation.latex.names import printed_key
 
 __all__ = [
     "Definition",
@@ -93,7 +94,7 @@ class NamedConstant:
 class NameBook:
     """Hands out names while a response is written down; equal definitions share one name.
 
-    `taken` are the model's own names, which are never given to anything else.
+    `taken` are the model's own names: nothing else is given a name that prints like one.
     """
 
     taken: frozenset[str]
@@ -105,7 +106,8 @@ class NameBook:
         if definition not in self._constants:
             if number is None:
                 number = self._counters[stem] = self._counters.get(stem, 0) + 1
-            spelling = next(s for s in _spellings(stem, number) if s not in self.taken)
+            taken = {printed_key(name) for name in self.taken}
+            spelling = next(s for s in _spellings(stem, number) if printed_key(s) not in taken)
             self._constants[definition] = NamedConstant(spelling, definition)
         return self._constants[definition].name
 

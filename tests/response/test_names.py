@@ -10,6 +10,7 @@ from flint import arb, ctx
 import closedform
 from closedform.algebra.field import BaseField
 from closedform.notation.expression import Call, Number, Sum
+from closedform.notation.latex.names import name_box
 from closedform.notation.plain import plain
 from closedform.response.names import (
     NameBook,
@@ -50,11 +51,19 @@ def test_names_of_the_model_are_left_to_it() -> None:
     assert book.name_of("C", RootPart(Q, CUBIC, 1, "imaginary")) == "C_r_1"
 
 
+def test_no_name_is_given_that_prints_like_one_of_the_model() -> None:
+    book = NameBook(frozenset({"omega1", "C_1", "lamda_1"}))
+    assert book.name_of("omega", ROOT2) == "omega_r_1"
+    assert book.name_of("C", ROOT3) == "C_r_1"
+    assert book.name_of("lambda", RootPart(Q, CUBIC, 1, "real")) == "lambda_r_1"
+
+
 @pytest.mark.parametrize(
     ("states", "time"),
     [
         (["omega_1", "C1", "lambda_1"], "t"),
         (["alpha_1", "C_1", "C2"], "t"),
+        (["omega1", "C_1", "lamda1"], "alpha1"),
         (["x", "y", "z"], "omega_1"),
         (["x", "y", "z"], "C1"),
         (["alpha_1", "alpha_r_1", "lambda_r_1"], "lambda_1"),
@@ -67,7 +76,8 @@ def test_a_response_uses_no_name_of_its_model(states: list[str], time: str) -> N
     response = closedform.respond(model)
     names = [c.name for c in response.closed_forms.constants]
     assert len(set(names)) == len(names)
-    assert not {*states, time, "omega_2"} & set(names)
+    printed = [name_box(name).latex for name in (*states, time, "omega_2", *names)]
+    assert len(set(printed)) == len(printed)
     record = verify(response)
     assert record.holds
 
