@@ -23,8 +23,9 @@ from closedform.model.errors import (
     WrongKindError,
 )
 from closedform.model.model import Model, Output
-from closedform.model.naming import check_name, check_states
+from closedform.model.naming import check_lookalike, check_name, check_states
 from closedform.model.source import Source
+from closedform.notation.latex.names import printed_key
 from closedform.notation.linear import linear_combination
 from closedform.notation.reader import read_formula
 
@@ -102,9 +103,8 @@ def build(mapping: Mapping[str, object], name: str, source: Source) -> Model:
         raise WrongKindError(source.at("title"), "a title", "empty text")
     time = _text(mapping.get("time", "t"), "time", source)
     check_name(time, "time", source)
-    states = check_states(_array(mapping["states"], "an array of names", "states", source), source)
-    if time in states:
-        check_name(time, f"states[{states.index(time) + 1}]", source, time=time)
+    given = _array(mapping["states"], "an array of names", "states", source)
+    states = check_states(given, time, source)
     return Model(
         name=_stem(name),
         title=" ".join(title.split()),
@@ -192,7 +192,12 @@ def _outputs(
     if not isinstance(value, Mapping):
         expected = "a table with a formula for each output"
         raise WrongKindError(source.at("outputs"), expected, kind_of(value))
-    return tuple(_output(name, formula, states, time, source) for name, formula in value.items())
+    printed = {printed_key(name): name for name in (time, *states)}
+    outputs = []
+    for name, formula in value.items():
+        outputs.append(_output(name, formula, states, time, source))
+        check_lookalike(name, f"outputs.{name}", source, printed)
+    return tuple(outputs)
 
 
 def _output(

@@ -10,6 +10,7 @@ __all__ = [
     "DuplicateNameError",
     "InitialLengthError",
     "LaterKeyError",
+    "LookalikeNamesError",
     "MisplacedKeyError",
     "MissingInitialError",
     "MissingKeyError",
@@ -148,6 +149,22 @@ class DuplicateNameError(ModelError):
 
     def _paragraph(self) -> str:
         return f"the name '{self.name}' is given twice; names must differ"
+
+
+class LookalikeNamesError(ModelError):
+    """Two names that one symbol would stand for in print; `printed` is its plain spelling."""
+
+    def __init__(self, place: Place, name: str, other: str, printed: str) -> None:
+        super().__init__(place, name, other, printed)
+        self.name, self.other, self.printed = name, other, printed
+
+    def _paragraph(self) -> str:
+        base, *indices = self.printed.split("_")
+        index = f" with the index {','.join(indices)}" if indices else ""
+        return (
+            f"the names '{self.other}' and '{self.name}' would be printed alike, both as "
+            f"{base}{index}; give one of them another letter, word or index"
+        )
 
 
 class RowCountError(ModelError):

@@ -5,9 +5,11 @@ from __future__ import annotations
 import re
 from collections.abc import Sequence
 
+from closedform.errors import Place
 from closedform.model.entries import kind_of
 from closedform.model.errors import (
     DuplicateNameError,
+    LookalikeNamesError,
     NoStatesError,
     TooManyStatesError,
     UnusableNameError,
@@ -16,8 +18,9 @@ from closedform.model.errors import (
 from closedform.model.source import Source
 from closedform.notation.expression import FUNCTIONS
 from closedform.notation.greek import ascii_name
+from closedform.notation.latex.names import printed_key
 
-__all__ = ["MOST_STATES", "check_name", "check_states"]
+__all__ = ["MOST_STATES", "check_lookalike", "check_name", "check_states"]
 
 MOST_STATES = 400
 LONGEST_NAME = 64
@@ -51,27 +54,45 @@ def check_name(
     elif name in states:
         reason = "a state has that name"
     if reason:
-        place = source.at_name(key) if key.startswith("outputs.") else source.at(key)
-        raise UnusableNameError(place, name, reason)
+        raise UnusableNameError(_place(key, source), name, reason)
 
 
-def check_states(given: Sequence[object], source: Source) -> tuple[str, ...]:
-    """Return the names of the states, each usable and different from the others.
+def check_lookalike(name: str, key: str, source: Source, printed: dict[str, str]) -> None:
+    """Add a name to those known so far, which `printed` holds by their `printed_key`.
+
+    Raises:  LookalikeNamesError if another of them is printed like it.
+    """
+    symbol = printed_key(name)
+    other = printed.setdefault(symbol, name)
+    if other != name:
+        raise LookalikeNamesError(_place(key, source), name, other, symbol)
+
+
+def _place(key: str, source: Source) -> Place:
+    return source.at_name(key) if key.startswith("outputs.") else source.at(key)
+
+
+def check_states(given: Sequence[object], time: str, source: Source) -> tuple[str, ...]:
+    """Return the names of the states, each usable and different from the others and the time.
+
+    They differ in print too: nobody could tell x1 from x_1 in a formula.
 
     Raises:  NoStatesError, TooManyStatesError, WrongKindError, UnusableNameError,
-             DuplicateNameError.
+             DuplicateNameError, LookalikeNamesError.
     """
     if not given:
         raise NoStatesError(source.at("states"))
     if len(given) > MOST_STATES:
         raise TooManyStatesError(source.at("states"), len(given), MOST_STATES)
     states: list[str] = []
+    printed = {printed_key(time): time}
     for k, name in enumerate(given, start=1):
         if not isinstance(name, str):
             place = source.at(f"states[{k}]")
             raise WrongKindError(place, "a name in quotation marks", kind_of(name))
-        check_name(name, f"states[{k}]", source)
+        check_name(name, f"states[{k}]", source, time=time)
         if name in states:
             raise DuplicateNameError(source.at(f"states[{k}]"), name)
+        check_lookalike(name, f"states[{k}]", source, printed)
         states.append(name)
     return tuple(states)

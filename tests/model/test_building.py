@@ -17,7 +17,12 @@ from hypothesis import strategies as st
 from closedform.algebra.surds import SurdSum
 from closedform.errors import Place
 from closedform.model import model_from
-from closedform.model.errors import BinaryFractionError, ModelError, WrongKindError
+from closedform.model.errors import (
+    BinaryFractionError,
+    LookalikeNamesError,
+    ModelError,
+    WrongKindError,
+)
 from closedform.model.model import Model
 from closedform.notation.errors import FormulaSyntaxError, NotFiniteError, SizeError
 from closedform.notation.plain import plain
@@ -126,6 +131,20 @@ def test_the_state_cannot_have_the_name_of_the_time() -> None:
     with pytest.raises(ModelError, match="the name of the time"):
         built(time="x2")
     assert built(time="s", states=["t", "x2"]).states == ("t", "x2")
+
+
+@pytest.mark.parametrize(
+    "pair", [("x1", "x_1"), ("lambda", "lamda"), ("omicron", "o"), ("omega1", "omega_1")]
+)
+def test_states_that_are_printed_alike_are_refused(pair: tuple[str, str]) -> None:
+    with pytest.raises(LookalikeNamesError) as caught:
+        built(states=pair)
+    assert (caught.value.other, caught.value.name) == pair
+
+
+@pytest.mark.parametrize("pair", [("x1", "x_1_1"), ("x", "X"), ("k_12", "k_1_2")])
+def test_states_that_are_printed_differently_are_taken(pair: tuple[str, str]) -> None:
+    assert built(states=pair).states == pair
 
 
 def test_outputs_keep_their_order() -> None:
