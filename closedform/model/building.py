@@ -39,6 +39,24 @@ REQUIRED = {
 }
 OPTIONAL = ("summary", "time", "outputs", "times")
 LATER = ("equations", "mass", "damping", "stiffness", "parameters", "inputs", "document")
+USUAL_KEYS = {
+    "a": "matrix",
+    "system": "matrix",
+    "ic": "initial",
+    "x0": "initial",
+    "y0": "initial",
+    "initial_conditions": "initial",
+    "x": "states",
+    "variables": "states",
+    "unknowns": "states",
+    "y": "outputs",
+    "name": "title",
+    "description": "summary",
+    "abstract": "summary",
+    "t": "times",
+    "independent_variable": "time",
+}
+"""What people call the keys elsewhere, in small letters, beside slips of the pen."""
 LONGEST_STEM = 100
 
 NOWHERE = Place()
@@ -124,12 +142,19 @@ def _check_keys(mapping: Mapping[str, object], source: Source) -> None:
         if key in LATER:
             raise LaterKeyError(source.at_name(key), key)
         if key not in known:
-            near = get_close_matches(str(key), known, n=1)
-            place = source.at_name(str(key))
-            raise UnknownKeyError(place, str(key), near[0] if near else None, known)
+            raise UnknownKeyError(source.at_name(str(key)), str(key), _nearest(str(key)), known)
     for key, example in REQUIRED.items():
         if key not in mapping:
             raise MissingKeyError(source.place, key, example)
+
+
+def _nearest(key: str) -> str | None:
+    """Return the key that was probably meant, if one comes near."""
+    small = key.lower()
+    if small in USUAL_KEYS:
+        return USUAL_KEYS[small]
+    near = get_close_matches(small, (*REQUIRED, *OPTIONAL), n=1)
+    return near[0] if near else None
 
 
 def _text(value: object, key: str, source: Source) -> str:

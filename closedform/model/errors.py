@@ -38,7 +38,7 @@ class MissingKeyError(ModelError):
         self.key, self.example = key, example
 
     def _paragraph(self) -> str:
-        return f"the key '{self.key}' is missing; add it, as in: {self.example}"
+        return f"the key '{self.key}' is missing; add a line such as {quoted(self.example)}"
 
 
 class UnknownKeyError(ModelError):

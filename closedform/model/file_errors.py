@@ -17,6 +17,9 @@ __all__ = [
 ]
 
 
+USUAL_LINES = 'a model file is made of lines such as title = "..." and matrix = [[0, 1], [-2, -3]]'
+
+
 class ModelFileError(InputError):
     """A model file that cannot be read; `path` is as it was given."""
 
@@ -29,14 +32,14 @@ class FileMissingError(ModelFileError):
     """There is no such file."""
 
     def __str__(self) -> str:
-        return f"{self.path}: there is no such file; check the name and the folder"
+        return f"{self.path}: there is no such file; check the name and the folder."
 
 
 class FileIsDirectoryError(ModelFileError):
     """The path is that of a directory."""
 
     def __str__(self) -> str:
-        return f"{self.path}: this is a directory; name the model file inside it"
+        return f"{self.path}: this is a directory; name the model file inside it."
 
 
 class FileUnreadableError(ModelFileError):
@@ -47,7 +50,7 @@ class FileUnreadableError(ModelFileError):
         self.reason = reason
 
     def __str__(self) -> str:
-        return f"{self.path}: the file cannot be read ({self.reason}); check its permissions"
+        return f"{self.path}: the file cannot be read ({self.reason}); check its permissions."
 
 
 class FileTooLargeError(ModelFileError):
@@ -71,7 +74,7 @@ class FileEmptyError(ModelFileError):
     def __str__(self) -> str:
         return (
             f"{self.path}: the file is empty; a model has at least title, states, matrix and "
-            "initial"
+            "initial."
         )
 
 
@@ -85,19 +88,16 @@ class FileEncodingError(ModelFileError):
     def __str__(self) -> str:
         return (
             f"{self.path}: byte {self.position} (0x{self.byte:02x}) is not UTF-8 text; save the "
-            "file in UTF-8"
+            "file in UTF-8."
         )
 
 
 class FileSyntaxError(PlacedError):
-    """The file is not TOML; `reason` says what was met."""
+    """The file is not TOML; `reason` says what was met, `advice` what is usually meant."""
 
-    def __init__(self, place: Place, reason: str) -> None:
-        super().__init__(place, reason)
-        self.reason = reason
+    def __init__(self, place: Place, reason: str, advice: str = USUAL_LINES) -> None:
+        super().__init__(place, reason, advice)
+        self.reason, self.advice = reason, advice
 
     def _paragraph(self) -> str:
-        return (
-            f"the file is not valid TOML: {self.reason}; a model file is made of lines such as "
-            'title = "..." and matrix = [[0, 1], [-2, -3]]'
-        )
+        return f"the file is not valid TOML: {self.reason}; {self.advice}"

@@ -25,7 +25,12 @@ __all__ = ["MOST_STATES", "check_lookalike", "check_name", "check_states"]
 MOST_STATES = 400
 LONGEST_NAME = 64
 USABLE = re.compile("[A-Za-z][A-Za-z0-9_]*")
-KEPT = ("e", "i", "pi")
+KEPT = {
+    "e": "in a formula people take it for the base of exp; write 'e_1' or a word such as 'error'",
+    "i": "in a formula people take it for the imaginary unit; write 'i_L', 'i_1' or 'current'",
+    "pi": "in a formula people take it for the number 3.14159...; write 'p_i' or 'pi_1'",
+}
+"""Names that mean something else in a formula, and what to write."""
 
 
 def check_name(
@@ -46,13 +51,13 @@ def check_name(
     elif len(name) > LONGEST_NAME:
         reason = f"it has {len(name)} characters, and names have at most {LONGEST_NAME}"
     elif name in FUNCTIONS:
-        reason = "it is the name of a function"
+        reason = f"it is the name of a function; write '{name}_1', or choose another"
     elif name in KEPT:
-        reason = "in a formula it would be taken for a well-known number"
+        reason = KEPT[name]
     elif name == time:
         reason = "it is the name of the time; choose another, or set 'time'"
     elif name in states:
-        reason = "a state has that name"
+        reason = "a state has that name; choose another"
     if reason:
         raise UnusableNameError(_place(key, source), name, reason)
 

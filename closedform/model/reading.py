@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import os
 import re
+import sys
 import tomllib
 from pathlib import Path
 from typing import Any
@@ -12,6 +13,7 @@ from closedform.errors import Place
 from closedform.model.building import build
 from closedform.model.entries import DecimalText
 from closedform.model.file_errors import (
+    USUAL_LINES,
     FileEmptyError,
     FileEncodingError,
     FileIsDirectoryError,
@@ -28,6 +30,22 @@ __all__ = ["LARGEST_FILE", "load"]
 LARGEST_FILE = 2_000_000
 """Bytes of a model file."""
 BYTE_ORDER_MARK = b"\xef\xbb\xbf"
+QUOTED_FORMULA = """a fraction or a formula stands in quotation marks, as in "1/2\""""
+ADVICE = {
+    "Unclosed array": (
+        "before this place a comma or a closing bracket may be missing, or digits after a "
+        f"decimal point; {QUOTED_FORMULA}"
+    ),
+    "Invalid value": (
+        f'text stands in quotation marks, as in title = "Two carts", and {QUOTED_FORMULA}; '
+        "a decimal has digits on both sides of its point"
+    ),
+    "Expected newline or end of document after a statement": (
+        "each value has a line of its own; the decimal mark is a point, as in 0.5, and "
+        f"{QUOTED_FORMULA}"
+    ),
+}
+"""What is usually meant where the TOML reader stops, by what it says."""
 LONG_DOTTED_KEY = re.compile(
     r"""(?<![\w"'-])(?:(?:[\w-]+|"[^"\n]*"|'[^'\n]*')[ \t]*\.[ \t]*){40}"""
 )
@@ -88,12 +106,20 @@ def _parse(text: str, name: str) -> dict[str, Any]:
         return tomllib.loads(text, parse_float=DecimalText)
     except tomllib.TOMLDecodeError as error:
         raise _syntax_error(str(error), text, place) from None
-    except ValueError:  # beyond the digits that Python converts
+    except ValueError:
+        if not _has_long_integer(text):
+            raise
         raise FileSyntaxError(place, "an integer with thousands of digits") from None
     except RecursionError:
         raise FileSyntaxError(
             place, "arrays or tables are nested hundreds of levels deep"
         ) from None
+
+
+def _has_long_integer(text: str) -> bool:
+    """Say whether digits stand in a row beyond those that Python converts to an integer."""
+    most = sys.get_int_max_str_digits()
+    return any(len(run.replace("_", "")) > most for run in re.findall("[0-9_]+", text))
 
 
 def _syntax_error(message: str, text: str, place: Place) -> FileSyntaxError:
@@ -104,6 +130,5 @@ def _syntax_error(message: str, text: str, place: Place) -> FileSyntaxError:
         line, column = int(found[1]), int(found[2])
     else:  # at the end of the document
         line, column = len(lines), len(lines[-1]) + 1
-    return FileSyntaxError(
-        Place(place.file, None, line, column, lines[line - 1]), reason[:1].lower() + reason[1:]
-    )
+    place = Place(place.file, None, line, column, lines[line - 1])
+    return FileSyntaxError(place, reason[:1].lower() + reason[1:], ADVICE.get(reason, USUAL_LINES))

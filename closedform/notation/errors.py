@@ -23,6 +23,7 @@ __all__ = [
     "SizeError",
     "UndeclaredNameError",
     "quoted",
+    "sentence",
     "shown",
 ]
 
@@ -51,6 +52,11 @@ def quoted(text: str, limit: int = 60) -> str:
     return f"'{text}'" if len(text) <= limit else f"'{text[: limit - 1]}…'"
 
 
+def sentence(paragraph: str) -> str:
+    """Return a paragraph that ends as a sentence does, with a full stop if nothing else."""
+    return paragraph if paragraph.endswith((".", "?", "…")) else f"{paragraph}."
+
+
 class PlacedError(InputError):
     """An error that shows where in its source something stands: `place`."""
 
@@ -59,10 +65,10 @@ class PlacedError(InputError):
         self.place = place
 
     def __str__(self) -> str:
-        return shown(self.place, self._paragraph())
+        return shown(self.place, sentence(self._paragraph()))
 
     def _paragraph(self) -> str:
-        """Return what is wrong and what to do about it, without the place."""
+        """Return what is wrong and what to do about it, without the place; a full stop is added."""
         raise NotImplementedError
 
 

@@ -21,6 +21,7 @@ from closedform.model.errors import (
     BinaryFractionError,
     LookalikeNamesError,
     ModelError,
+    UnknownKeyError,
     WrongKindError,
 )
 from closedform.model.model import Model
@@ -125,6 +126,19 @@ def test_titles_take_one_line() -> None:
 def test_a_key_that_is_no_text_is_refused() -> None:
     with pytest.raises(ModelError, match="there is no key '3'"):
         model_from({**SOUND, 3: 1}, name="a")  # type: ignore[dict-item]
+
+
+USUAL = [
+    *[("a", "matrix"), ("A", "matrix"), ("x0", "initial"), ("init", "initial")],
+    *[("initial_conditions", "initial"), ("state", "states"), ("y", "outputs")],
+    *[("output", "outputs"), ("name", "title"), ("MATRIX", "matrix"), ("t", "times")],
+]
+
+
+@pytest.mark.parametrize(("key", "meant"), USUAL)
+def test_a_key_by_its_usual_name_elsewhere_is_understood(key: str, meant: str) -> None:
+    with pytest.raises(UnknownKeyError, match=rf"no key '{key}'; did you mean '{meant}'\?"):
+        built(**{key: []})
 
 
 def test_the_state_cannot_have_the_name_of_the_time() -> None:

@@ -53,7 +53,10 @@ MODEL: list[tuple[ModelError, str]] = [
     (LookalikeNamesError(HERE, "lamda", "lambda", "lambda"), "both as lambda; give one of them"),
     (MisplacedKeyError(HERE, "times", "outputs"), "it stands below the heading [outputs]"),
     (MissingInitialError(HERE, tuple("abcdefghij")), "no value to 'a', 'b', 'c', 'd', 'e', 'f'"),
-    (MissingKeyError(HERE, "title", "title = 'a'"), "the key 'title' is missing; add it, as in:"),
+    (
+        MissingKeyError(HERE, "title", "title = 'a'"),
+        "is missing; add a line such as 'title = 'a''.",
+    ),
     (NoStatesError(HERE), "there are no states"),
     (RowCountError(HERE, 3, 1), "the matrix has 3 rows, but there is 1 state;"),
     (
@@ -83,6 +86,7 @@ FILE: list[tuple[InputError, str]] = [
     ),
     (FileTooLargeError("bench.toml", 9, 5), "at most 5 bytes, and this one has 9 bytes"),
     (FileTooLargeError("bench.toml", None, 5), "at most 5 bytes, and this one has more than that"),
+    (FileSyntaxError(Place("bench.toml"), "a slip", "some advice"), "TOML: a slip; some advice."),
     (FileUnreadableError("bench.toml", "why"), "the file cannot be read (why)"),
 ]
 
@@ -91,6 +95,13 @@ FILE: list[tuple[InputError, str]] = [
 def test_the_text_names_the_file_and_the_facts(error: InputError, words: str) -> None:
     assert str(error).startswith("bench.toml")
     assert words in str(error)
+
+
+@pytest.mark.parametrize(("error", "words"), [*MODEL, *FILE])
+def test_the_text_ends_as_a_sentence(error: InputError, words: str) -> None:
+    assert words in str(error)
+    assert str(error).endswith((".", "?", "…"))
+    assert not str(error).endswith((" .", "..", ":."))
 
 
 @pytest.mark.parametrize(("error", "words"), MODEL)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+import tomllib
 from fractions import Fraction
 from pathlib import Path
 
@@ -126,6 +127,37 @@ def test_syntax_errors_show_the_line(tmp_path: Path) -> None:
     assert str(caught.value).endswith("\n  x = = 1\n      ^")
 
 
+SYNTAX = [
+    ("a = [[0, 1] [2, 3]]", "column 13", "unclosed array; before this place a comma or a"),
+    ("a = [1/2]", "column 7", """a formula stands in quotation marks, as in "1/2"."""),
+    ("a = [1., 2]", "column 7", "or digits after a decimal point;"),
+    ("a = [.5]", "column 6", "a decimal has digits on both sides of its point."),
+    ("a = Two carts", "column 5", "invalid value; text stands in quotation marks, as in title ="),
+    ("a = 1,5", "column 6", "the decimal mark is a point, as in 0.5, and"),
+    ("a 3", "column 3", "; a model file is made of lines such as"),
+]
+
+
+@pytest.mark.parametrize(("line", "column", "words"), SYNTAX)
+def test_usual_slips_in_toml_come_with_advice(
+    tmp_path: Path, line: str, column: str, words: str
+) -> None:
+    with pytest.raises(file_errors.FileSyntaxError) as caught:
+        load(written(tmp_path, line))
+    assert f"line 1, {column}: the file is not valid TOML: " in str(caught.value)
+    assert words in str(caught.value)
+
+
+def test_only_a_long_integer_is_called_one(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    def failing(text: str, *, parse_float: object) -> None:
+        raise ValueError(text[:1], parse_float)
+
+    monkeypatch.setattr(tomllib, "loads", failing)
+    with pytest.raises(ValueError, match="t") as caught:
+        load(written(tmp_path, BENCH))
+    assert not isinstance(caught.value, InputError)
+
+
 def test_a_missing_file_is_told(tmp_path: Path) -> None:
     with pytest.raises(file_errors.FileMissingError, match="there is no such file"):
         load(tmp_path / "none.toml")
@@ -196,7 +228,7 @@ def test_a_slip_in_a_multi_line_formula_is_shown_in_its_line(tmp_path: Path) -> 
 
 STATEMENTS: list[tuple[str, str, type[InputError], str]] = [
     ('title = "Two carts"\n', "", errors.MissingKeyError, "toml: the key 'title' is missing"),
-    ("initial = [1, 0]\n", "", errors.MissingKeyError, "as in: initial = [1, 0]"),
+    ("initial = [1, 0]\n", "", errors.MissingKeyError, "such as 'initial = [1, 0]'."),
     ('"Two carts"', '""', errors.WrongKindError, "line 1, column 9: here stands empty text"),
     ('"Two carts"', "1", errors.WrongKindError, "here stands a number, and text in quotation"),
     ("title", "matrx = 1\ntitle", errors.UnknownKeyError, "line 1, column 1: there is no key"),
@@ -242,7 +274,11 @@ STATEMENTS: list[tuple[str, str, type[InputError], str]] = [
     ('"x2"', '"x-2"', errors.UnusableNameError, "a name begins"),
     ('"x2"', '"ω"', errors.UnusableNameError, "write 'omega'"),
     ('"x2"', '"sin"', errors.UnusableNameError, "it is the name of a function"),
-    ('"x2"', '"pi"', errors.UnusableNameError, "well-known number"),
+    ('"x2"', '"pi"', errors.UnusableNameError, "for the number 3.14159...; write 'p_i' or"),
+    ('"x2"', '"e"', errors.UnusableNameError, "the base of exp; write 'e_1' or a word such as"),
+    ('"x2"', '"i"', errors.UnusableNameError, "the imaginary unit; write 'i_L', 'i_1' or"),
+    ("title", "A = 1\ntitle", errors.UnknownKeyError, "no key 'A'; did you mean 'matrix'?"),
+    ("title", "Title = 1\ntitle", errors.UnknownKeyError, "did you mean 'title'?"),
     ('"x2"', '"t"', errors.UnusableNameError, "it is the name of the time"),
     ('"x2"', f'"{"x" * 65}"', errors.UnusableNameError, "names have at most 64"),
     (

@@ -27,6 +27,7 @@ from closedform.notation.errors import (
     SizeError,
     UndeclaredNameError,
     quoted,
+    sentence,
     shown,
 )
 
@@ -59,6 +60,7 @@ def test_the_text_names_place_and_facts(error: FormulaError, words: str) -> None
     assert text.startswith("bench.toml, matrix[1][2], line 3, column 5: ")
     assert words in text
     assert text.endswith("\n      1/0\n      ^")
+    assert text.split("\n", maxsplit=1)[0].endswith((".", "?", "…"))
 
 
 @pytest.mark.parametrize(("error", "words"), ERRORS)
@@ -77,6 +79,14 @@ def test_all_errors_are_input_errors_and_tested() -> None:
     }
     assert {type(error) for error, _ in ERRORS} == classes
     assert all(issubclass(cls, FormulaError) and issubclass(cls, InputError) for cls in classes)
+
+
+SENTENCES = [("do this", "do this."), ("do this.", "do this."), ("a?", "a?"), ("a, …", "a, …")]
+
+
+@pytest.mark.parametrize(("paragraph", "ended"), SENTENCES)
+def test_a_paragraph_ends_with_one_mark(paragraph: str, ended: str) -> None:
+    assert sentence(paragraph) == ended
 
 
 def test_without_a_place_the_paragraph_stands_alone() -> None:
