@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from fractions import Fraction
 
-from closedform.algebra.surds import SurdSum
+from closedform.algebra.surds import LARGEST_RADICAND, SurdSum
 from closedform.errors import Place
 from closedform.notation.errors import (
     DivisionByZeroError,
@@ -40,7 +40,7 @@ MOST_TERMS_BELOW = 7
 SIZE_LIMIT = (
     f"numerators and denominators have up to {MOST_BITS * 3 // 10} digits, sums up to "
     f"{MOST_TERMS} different roots, denominators up to {MOST_TERMS_BELOW}, and roots are taken "
-    "of integers up to 10^18"
+    f"of integers up to 10^{len(str(LARGEST_RADICAND)) - 1}"
 )
 HALF = Fraction(1, 2)
 
