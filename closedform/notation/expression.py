@@ -7,11 +7,14 @@ values is decided in ``closedform.algebra``, never here.
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import dataclass
 from fractions import Fraction
 from typing import TypeGuard
 
 __all__ = [
+    "ONE",
+    "ZERO",
     "Call",
     "Expression",
     "Name",
@@ -21,9 +24,12 @@ __all__ = [
     "Product",
     "Quotient",
     "Sum",
+    "factors_of",
     "is_expression",
     "number",
     "operations",
+    "power_of",
+    "product",
 ]
 
 FUNCTIONS = ("exp", "sin", "cos", "sinh", "cosh", "sqrt")
@@ -88,6 +94,8 @@ class Call:
     argument: Expression
 
 
+ZERO, ONE = Number(Fraction(0)), Number(Fraction(1))
+
 Expression = Number | Name | Negation | Sum | Product | Quotient | Power | Call
 
 
@@ -100,6 +108,38 @@ def number(value: Fraction | int) -> Expression:
     """Return the formula of a rational number, with its sign outside."""
     value = Fraction(value)
     return Negation(Number(-value)) if value < 0 else Number(value)
+
+
+def factors_of(expression: Expression) -> tuple[Expression, ...]:
+    """Return the factors of a product, products among them opened, ones left out.
+
+    Anything else is its own only factor; a product of ones is one.
+    """
+    if not isinstance(expression, Product):
+        return (expression,)
+    factors = tuple(f for part in expression.factors for f in factors_of(part))
+    return tuple(f for f in factors if f != ONE) or factors[:1]
+
+
+def product(factors: Iterable[Expression]) -> Expression:
+    """Return the product of factors in their order, products among them opened, ones left out.
+
+    It is 1 if nothing is left, and no `Product` if one factor is.
+
+    >>> product([ONE, Name("a"), Product((Name("b"), Name("c")))])
+    Product(factors=(Name(text='a'), Name(text='b'), Name(text='c')))
+    """
+    flat = tuple(f for factor in factors for f in factors_of(factor) if f != ONE)
+    if len(flat) > 1:
+        return Product(flat)
+    return flat[0] if flat else ONE
+
+
+def power_of(base: Expression, exponent: int) -> Expression:
+    """Return a base to an integer exponent; to 0 it is 1, to 1 the base itself."""
+    if exponent == 0:
+        return ONE
+    return base if exponent == 1 else Power(base, number(exponent))
 
 
 def operations(expression: Expression) -> int:

@@ -19,6 +19,8 @@ from closedform.notation.expression import (
     Product,
     Quotient,
     Sum,
+    factors_of,
+    product,
 )
 from closedform.notation.latex.box import BINARY, Box, Style, bracketed, joined, plain
 from closedform.notation.latex.names import is_long, name_box
@@ -51,14 +53,6 @@ def terms_of(expression: Expression) -> tuple[Expression, ...]:
     if isinstance(expression, Sum):
         return tuple(term for part in expression.terms for term in terms_of(part))
     return (expression,)
-
-
-def factors_of(expression: Expression) -> tuple[Expression, ...]:
-    """Return the factors of a product, products among them opened, ones left out."""
-    if not isinstance(expression, Product):
-        return (expression,)
-    factors = tuple(f for part in expression.factors for f in factors_of(part))
-    return tuple(f for f in factors if f != Number(Fraction(1))) or factors[:1]
 
 
 def signed(term: Expression) -> tuple[bool, Expression]:
@@ -119,7 +113,7 @@ def _factor(expression: Expression, style: Style) -> Box:
             factors[-1], Sum
         ):
             # a sum is easier to read beside a fraction than on top of it
-            front = Quotient(_rest(factors[:-1]), below)
+            front = Quotient(product(factors[:-1]), below)
             return _product(Product((front, factors[-1])), style)
         case Quotient(above, below):
             if style >= Style.SCRIPT:
@@ -208,8 +202,7 @@ def _product(expression: Product, style: Style) -> Box:
         match factors[0]:
             case Number(value) if value.denominator > 1:
                 # 3/2 t is set as 3t/2 in an exponent: the slash would seem to go on
-                lead = (Number(Fraction(value.numerator)), *factors[1:])
-                top = Product(lead) if value.numerator > 1 or len(lead) < 2 else _rest(lead[1:])
+                top = product((Number(Fraction(value.numerator)), *factors[1:]))
                 return _slashed(top, Number(Fraction(value.denominator)), style)
     boxes: list[Box] = []
     for i, factor in enumerate(factors):
@@ -220,10 +213,6 @@ def _product(expression: Product, style: Style) -> Box:
             boxes.append(Box(glue, space * style.scale))
         boxes.append(box)
     return joined(*boxes)
-
-
-def _rest(factors: tuple[Expression, ...]) -> Expression:
-    return factors[0] if len(factors) == 1 else Product(factors)
 
 
 def _one_of(factor: Expression, following: Expression | None, style: Style) -> Box:
