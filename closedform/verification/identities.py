@@ -7,10 +7,12 @@ with R_nu = 0, for every factor p and every j < nu; and F(0) is a sum of traces.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from functools import reduce
+from itertools import combinations
 
 from closedform.algebra.exponential import ExponentialMatrix
-from closedform.algebra.field import FieldMatrix
+from closedform.algebra.field import FieldMatrix, Polynomial
 from closedform.algebra.root_matrix import RootMatrix
 from closedform.algebra.spectrum import polynomial_of_matrix
 from closedform.response.response import Response
@@ -26,6 +28,7 @@ __all__ = [
     "model_check",
     "output_check",
     "routes_check",
+    "state_check",
 ]
 
 
@@ -59,16 +62,22 @@ def characteristic_polynomial_check(response: Response) -> Check:
     fault = _first_nonzero(value)
     if fault is not None:
         return Check(item, "refuted", f"entry {fault} of p(A) is not zero")
+    if _share_a_root([f.p for f in spectrum.factors]):
+        return Check(item, "refuted", _SHARED)
     return Check(
         item,
         "proved",
-        "the factors were multiplied out and A was put in: the zero matrix; the "
-        "eigenvalues add up to the trace of A",
+        "the factors were multiplied out and A was put in: the zero matrix; the eigenvalues add "
+        "up to the trace of A; no factor has a double root or shares one with another",
     )
 
 
 def differential_equation_check(item: str, function: ExponentialMatrix, a: FieldMatrix) -> Check:
-    """F' = A F, by comparing the coefficients of every e^(lambda t) t^j/j!."""
+    """F' = A F, by comparing the coefficients of every e^(lambda t) t^j/j!.
+
+    That these functions are independent, and that p'(lambda) may divide, needs roots that
+    are simple and all different, which is decided by greatest common divisors.
+    """
     compared = 0
     for term in function.terms:
         residues = term.residues
@@ -83,11 +92,13 @@ def differential_equation_check(item: str, function: ExponentialMatrix, a: Field
                 place = f"entry {fault}, the coefficient of {_monomial(term.factor.degree, j)}"
                 return Check(item, "refuted", f"does not vanish in {place}")
             compared += term.factor.degree
+    if _share_a_root([term.factor.p for term in function.terms]):
+        return Check(item, "refuted", _SHARED)
     return Check(
         item,
         "proved",
-        f"put in and sorted by the functions of time, {compared} in number: every coefficient "
-        "is zero",
+        f"put in and sorted by the functions of time, {compared} in number and all different: "
+        "every coefficient is zero",
     )
 
 
@@ -106,13 +117,11 @@ def output_check(response: Response) -> Check:
     if response.output is None or response.output.shape[0] != len(model.outputs):
         return Check(item, "refuted", "the outputs are not those that the model asks for")
     weights = field.matrix([[field.scalar(w) for w in o.weights] for o in model.outputs])
-    for left_term, right_term in zip(response.output.terms, response.state.terms, strict=True):
-        if len(left_term.residues) != len(right_term.residues):
-            return Check(item, "refuted", "a power of time is missing, or there is one too many")
-        for left, right in zip(left_term.residues, right_term.residues, strict=True):
-            fault = _first_nonzero_over_roots(left - right.after(weights))
-            if fault is not None:
-                return Check(item, "refuted", f"output {fault[0]} is another combination")
+    fault = _first_difference(response.output, response.state.after(weights))
+    if isinstance(fault, int):
+        return Check(item, "refuted", f"output {fault} is another combination")
+    if fault is not None:
+        return Check(item, "refuted", fault)
     return Check(
         item,
         "proved",
@@ -123,19 +132,30 @@ def output_check(response: Response) -> Check:
 def state_check(response: Response) -> Check:
     """x(t) = e^(At) x0, coefficient by coefficient."""
     item = "x = e^(At) x0"
-    pairs = zip(response.state.terms, response.exponential.terms, strict=True)
-    for state, transition in pairs:
-        if len(state.residues) != len(transition.residues):
-            return Check(item, "refuted", "a power of time is missing, or there is one too many")
-        for left, right in zip(state.residues, transition.residues, strict=True):
-            fault = _first_nonzero_over_roots(left - right.before(response.initial))
-            if fault is not None:
-                return Check(item, "refuted", f"state {fault[0]} differs")
+    fault = _first_difference(response.state, response.exponential.times(response.initial))
+    if isinstance(fault, int):
+        return Check(item, "refuted", f"state {fault} differs")
+    if fault is not None:
+        return Check(item, "refuted", fault)
     return Check(
         item,
         "proved",
         "the transition matrix was multiplied by the initial state: all coefficients agree",
     )
+
+
+def _first_difference(left: ExponentialMatrix, right: ExponentialMatrix) -> int | str | None:
+    """The row (from 1) in which a coefficient differs, or words for what cannot be compared."""
+    for one, other in zip(left.terms, right.terms, strict=True):
+        if len(one.residues) != len(other.residues):
+            return "a power of time is missing, or there is one too many"
+        for found, expected in zip(one.residues, other.residues, strict=True):
+            if found.modulus != expected.modulus:
+                return "a coefficient belongs to other eigenvalues"
+            fault = _first_nonzero_over_roots(found - expected)
+            if fault is not None:
+                return fault[0]
+    return None
 
 
 def chain_check(response: Response) -> Check:
@@ -152,11 +172,17 @@ def chain_check(response: Response) -> Check:
             below = vector
     if response.jordan.basis.rank() != response.matrix.shape[0]:
         return Check(item, "refuted", "the chains do not span the space: P is singular")
+    for number, factor in enumerate(response.spectrum.factors, start=1):
+        sizes = sorted(c.size for c in response.jordan.chains if c.factor.p == factor.p)
+        holders = [factor, *(term.factor for term in response.exponential.terms)]
+        if any(tuple(reversed(sizes)) != f.blocks for f in holders if f.p == factor.p):
+            return Check(item, "refuted", f"factor {number} has Jordan blocks of other sizes")
     return Check(
         item,
         "proved",
         "every vector of every chain was multiplied by A less its eigenvalue: the vector below "
-        "it, and zero for eigenvectors; the chains span the space",
+        "it, and zero for eigenvectors; the chains span the space, and their lengths are the "
+        "sizes of the blocks stated",
     )
 
 
@@ -252,6 +278,15 @@ def determinant_check(response: Response) -> Check:
         "the traces of the spectral projectors are the multiplicities, and the eigenvalues so "
         "counted add up to the trace of A; Jacobi's formula gives the determinant",
     )
+
+
+_SHARED = "an eigenvalue is a double root of its factor, or a root of two factors"
+
+
+def _share_a_root(polynomials: Sequence[Polynomial]) -> bool:
+    """Whether a polynomial is not squarefree, or two of them are not coprime."""
+    squarefree = all(p.degree() == 1 or p.gcd(p.diff()).degree() == 0 for p in polynomials)
+    return not squarefree or any(f.gcd(g).degree() > 0 for f, g in combinations(polynomials, 2))
 
 
 def _monomial(degree: int, power: int) -> str:

@@ -9,6 +9,7 @@ import pytest
 import closedform
 from closedform.response.response import Response
 from closedform.verification.identities import (
+    chain_check,
     characteristic_polynomial_check,
     determinant_check,
     differential_equation_check,
@@ -78,3 +79,47 @@ def test_the_two_routes_are_compared_on_every_basis_vector_for_every_eigenvalue(
     spoiled = replace(response, exponential=with_term(response.exponential, 0, wrong))
     assert routes_check(response).outcome == "proved"
     assert routes_check(spoiled).outcome == "refuted"
+
+
+def two_equal_blocks() -> Response:
+    rows = [[2, 1, 0, 0], [0, 2, 0, 0], [0, 0, 2, 1], [0, 0, 0, 2]]
+    return closedform.respond(closedform.system(rows, initial=[1, 2, 3, 4]))
+
+
+@pytest.mark.parametrize("blocks", [(2, 1, 1), (3, 1), (4,), (1, 1, 2)])
+def test_jordan_blocks_of_other_sizes_than_the_chains_are_refuted(blocks: tuple[int, ...]) -> None:
+    response = two_equal_blocks()
+    assert chain_check(response).outcome == "proved"
+    (factor,) = response.spectrum.factors
+    wrong = replace(factor, blocks=blocks)
+    check = chain_check(replace(response, spectrum=replace(response.spectrum, factors=(wrong,))))
+    assert (check.outcome, check.how) == ("refuted", "factor 1 has Jordan blocks of other sizes")
+    term = replace(response.exponential.terms[0], factor=wrong)
+    check = chain_check(replace(response, exponential=with_term(response.exponential, 0, term)))
+    assert check.outcome == "refuted"
+
+
+SHARED = "an eigenvalue is a double root of its factor, or a root of two factors"
+
+
+def test_a_factor_with_a_double_root_is_refuted() -> None:
+    """(lambda + 1)^2 taken for irreducible: A satisfies it, and the trace is right."""
+    response = closedform.respond(closedform.system([[-1, 0], [0, -1]], initial=[1, 1]))
+    (factor,) = response.spectrum.factors
+    wrong = replace(factor, p=factor.p**2, blocks=(1,))
+    spectrum = replace(response.spectrum, factors=(wrong,))
+    check = characteristic_polynomial_check(replace(response, spectrum=spectrum))
+    assert (check.outcome, check.how) == ("refuted", SHARED)
+
+
+def test_two_factors_with_a_common_root_are_refuted() -> None:
+    response = closedform.respond(closedform.system([[-1, 0], [0, -1]], initial=[1, 1]))
+    (factor,) = response.spectrum.factors
+    half = replace(factor, blocks=(1,))
+    spectrum = replace(response.spectrum, factors=(half, half))
+    check = characteristic_polynomial_check(replace(response, spectrum=spectrum))
+    assert (check.outcome, check.how) == ("refuted", SHARED)
+    (term,) = response.exponential.terms
+    twice = replace(response.exponential, terms=(term, term))
+    check = differential_equation_check("F", twice, response.matrix)
+    assert (check.outcome, check.how) == ("refuted", SHARED)
