@@ -3,14 +3,11 @@
 from __future__ import annotations
 
 from closedform.response.response import Response
+from closedform.verification.eigenvalues import NamedValues, eigenvalue_check, name_check
 from closedform.verification.enclosures import (
+    References,
     ball_check,
-    ball_exponentials,
     determinant_ball_check,
-    eigenvalue_check,
-    formula_check,
-    impulse_check,
-    mpmath_check,
     trial_times,
 )
 from closedform.verification.identities import (
@@ -26,6 +23,8 @@ from closedform.verification.identities import (
     state_check,
 )
 from closedform.verification.record import Check, VerificationRecord
+from closedform.verification.second_opinion import mpmath_check
+from closedform.verification.written import formula_check, impulse_check
 
 __all__ = ["prove", "verify"]
 
@@ -52,14 +51,20 @@ def prove(response: Response) -> tuple[Check, ...]:
 def verify(response: Response) -> VerificationRecord:
     """Return the whole record: the exact identities, then the certified comparisons."""
     times = trial_times(response)
-    references = ball_exponentials(response, times)
+    references = References(response, times)
+    values = NamedValues(response.closed_forms.constants)
     return VerificationRecord(
         (
             *prove(response),
             ball_check(response, references),
-            eigenvalue_check(response),
-            *([impulse_check(response, times)] if any(response.closed_forms.impulses) else []),
-            formula_check(response, references),
+            eigenvalue_check(response, values),
+            *([name_check(response)] if values.of_roots else []),
+            *(
+                [impulse_check(response, times, values)]
+                if any(response.closed_forms.impulses)
+                else []
+            ),
+            formula_check(response, references, values),
             determinant_ball_check(response, times),
             mpmath_check(response, times),
         )

@@ -11,12 +11,8 @@ from flint import arb, ctx
 import closedform
 from closedform.response.response import Response
 from closedform.verification import verify
-from closedform.verification.enclosures import (
-    LARGEST_FOR_MPMATH,
-    ball_exponentials,
-    mpmath_check,
-    trial_times,
-)
+from closedform.verification.enclosures import References, trial_times
+from closedform.verification.second_opinion import LARGEST_FOR_MPMATH, mpmath_check
 from tests.response.systems import KINDS, response_to
 
 
@@ -46,7 +42,8 @@ def test_stiff_and_slow_models_are_proved(rate: Fraction | int) -> None:
 def test_the_reference_is_the_exponential_of_mpmath(kind: str) -> None:
     response = response_to(kind)
     t = Fraction(3, 7)
-    (reference,) = ball_exponentials(response, (t,)).values()
+    with ctx.workprec(256):
+        reference = References(response, (t,)).at(t)
     n = response.matrix.shape[0]
     mp = mpmath.mp.clone()
     mp.dps = 60

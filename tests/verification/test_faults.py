@@ -703,17 +703,32 @@ def test_a_formula_that_has_no_value_is_refuted() -> None:
     zero = Sum((Name("t"), Negation(Name("t"))))
     bad = Call("sqrt", Sum((zero, Negation(Number(Fraction(1))))))
     found = refuted(with_formula(response, "solution", 0, bad))
-    assert found[FORMULAS].startswith("state x1 differs at t = ")
+    assert found[FORMULAS].startswith("state x1 has no value at t = ")
 
 
-def test_a_formula_too_wide_to_tell_is_refuted() -> None:
-    """Cancellation that 30 digits do not survive is not called agreement."""
+def with_cancellation(response: Response, height: int, error: Fraction) -> Response:
+    """State x1 + error written as x1 + e^(e^height) - e^(e^height) + error."""
+    large = Call("exp", Call("exp", Number(Fraction(height))))
+    wide = Sum((response.solution[0], large, Negation(large), Number(error)))
+    return with_formula(response, "solution", 0, wide)
+
+
+def formulas_of(response: Response) -> Check:
+    return next(check for check in verify(response).checks if check.item == FORMULAS)
+
+
+def test_a_formula_that_loses_thousands_of_digits_is_told_right_from_wrong() -> None:
     response = response_to("one state")
-    true = response.solution[0]
-    large = Call("exp", Call("exp", Number(Fraction(9))))
-    wide = Sum((true, large, Negation(large)))
-    found = refuted(with_formula(response, "solution", 0, wide))
-    assert found[FORMULAS].startswith("state x1 is not settled at t = ")
+    assert formulas_of(with_cancellation(response, 9, Fraction(0))).outcome == "enclosed"
+    check = formulas_of(with_cancellation(response, 9, Fraction(1, 10**25)))
+    assert check.outcome == "refuted"
+    assert check.how.startswith("state x1 differs at t = ")
+
+
+def test_a_formula_too_wide_to_tell_at_the_limit_is_not_called_agreement() -> None:
+    check = formulas_of(with_cancellation(response_to("one state"), 11, Fraction(0)))
+    assert check.outcome == "not attempted"
+    assert check.how.startswith("state x1 is not settled at t = 1/12 by 32768 bits")
 
 
 # --- random faults in random systems -------------------------------------------------------
