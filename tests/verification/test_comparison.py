@@ -120,11 +120,20 @@ def two_close_roots(a: int) -> list[list[object]]:
     return [[0, 1, 0, 0], [0, 0, 1, 0], [0, 0, 0, 1], [2, -4 * a, 2 * a * a, 0]]
 
 
+def three_close_frequencies(e: Fraction) -> list[list[object]]:
+    """Undamped: x'' = -K x with K near the unit matrix, and eigenvalues about e apart."""
+    unit = [[0, 0, 0, *(int(i == k) for k in range(3))] for i in range(3)]
+    stiffness = [[1, e, 0], [e, 1, e], [0, e, 1 + e]]
+    return [*unit, *([*(-entry for entry in row), 0, 0, 0] for row in stiffness)]
+
+
 CLOSE = {
     "two 1e-40 apart": gap(Fraction(1, 10**40)),
     "two 1e-60 apart": gap(Fraction(1, 10**60)),
     "three 1e-20 apart": three_close(Fraction(1, 10**20)),
     "two of four 1e-90 apart": two_close_roots(10**30),
+    "two of four 1e-150 apart": two_close_roots(10**50),
+    "three frequencies 1e-40 apart": three_close_frequencies(Fraction(1, 10**40)),
 }
 
 
