@@ -204,6 +204,8 @@ def _product(expression: Product, style: Style) -> Box:
                 # 3/2 t is set as 3t/2 in an exponent: the slash would seem to go on
                 top = product((Number(Fraction(value.numerator)), *factors[1:]))
                 return _slashed(top, Number(Fraction(value.denominator)), style)
+            case Quotient(above, below):
+                return _slashed(product((above, *factors[1:])), below, style)
     boxes: list[Box] = []
     for i, factor in enumerate(factors):
         following = factors[i + 1] if i + 1 < len(factors) else None
