@@ -66,9 +66,12 @@ class ClosedForms:
         return sum(operations(formula) for row in rows for formula in row)
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, repr=False)
 class Response:
     """The exact response of a model.
+
+    `transition`, `solution` and `outputs` are its formulas; `transition_at` and
+    `solution_at` give certified numbers.
 
     Shapes:  `exponential` is e^(At), n x n; `state` is x(t), n x 1; `output` is y(t), or
     None when the model asks for no outputs.
@@ -110,6 +113,9 @@ class Response:
         """One formula per output."""
         return FormulaColumn(self.closed_forms.outputs)
 
+    def __repr__(self) -> str:
+        return f"<Response of {self.model.title!r}, {len(self.model.states)} states>"
+
     def __str__(self) -> str:
         """Return the solution, a line for each state."""
         t = self.model.time
@@ -130,7 +136,18 @@ class Response:
 
 
 def respond(model: Model) -> Response:
-    """Return the exact response of a model: e^(At), x(t) and the outputs."""
+    """Return the exact response of a model: e^(At), x(t) and the outputs.
+
+    Shapes:  n states give an n x n transition matrix and n formulas of the solution.
+    Units:   those of the model; time in the unit of the rates' inverse.
+    Exact:   no floating-point number takes part.  Nothing is proved yet: see `verify`.
+
+    >>> from closedform.model.building import system
+    >>> response = respond(system([[0, 1], [-4, 0]], initial=[1, 0]))
+    >>> print(response)
+    x1(t) = cos(2*t)
+    x2(t) = -2*sin(2*t)
+    """
     field = base_field(
         number
         for row in (*model.matrix, model.initial, *(o.weights for o in model.outputs))
