@@ -6,6 +6,7 @@ from collections.abc import Iterator
 
 from closedform.derivation.abbreviations import abbreviations_step, names_in
 from closedform.derivation.canonical_steps import canonical_steps
+from closedform.derivation.proof import prove_statements
 from closedform.derivation.resolvent_steps import resolvent_steps
 from closedform.derivation.result_steps import (
     cautions_step,
@@ -32,14 +33,21 @@ __all__ = ["derive"]
 def derive(response: Response, record: VerificationRecord, *, digits: int = 6) -> Derivation:
     """Return the derivation of a response that holds, with `digits` figures in its tables.
 
-    Raises ValueError if the record does not hold: nothing is derived from a refuted result.
+    Every statement and table in it is proved once more as it will be printed, and the
+    derivation's `record` has that as its last check.
+
+    Raises:  ValueError if the record does not hold: nothing is derived from a refuted result;
+             StatementRefutedError if a step states what does not hold.
     """
     if not record.holds:
         raise ValueError("only a response that was proved is derived")
-    return Derivation(response.model.title, tuple(_steps(response, record, digits)))
+    steps = tuple(_steps(response, digits))
+    whole = VerificationRecord((*record.checks, prove_statements(response, steps, digits)))
+    ends = (verification_step(whole), cautions_step())
+    return Derivation(response.model.title, (*steps, *ends), whole)
 
 
-def _steps(response: Response, record: VerificationRecord, digits: int) -> Iterator[Step]:
+def _steps(response: Response, digits: int) -> Iterator[Step]:
     forms = response.closed_forms
     yield model_step(response)
     yield characteristic_polynomial_step(response)
@@ -63,8 +71,6 @@ def _steps(response: Response, record: VerificationRecord, digits: int) -> Itera
     if abbreviations is not None:
         yield abbreviations
     yield values_step(response, digits)
-    yield verification_step(record)
-    yield cautions_step()
 
 
 def _formulas(steps: list[Step]) -> Iterator[Expression]:

@@ -192,14 +192,15 @@ def _field_name(response: Response) -> str:
 def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
     """Say what each named root is: one step for every factor that needs names."""
     constants = {c.name: c for c in response.closed_forms.constants}
-    for factor, modes in zip(response.spectrum.factors, response.closed_forms.modes, strict=True):
-        names = [
-            name
-            for mode in modes
-            for name in (mode.rate, mode.frequency)
+    for factor in response.spectrum.factors:
+        named = [
+            (eigenvalue, constants[name])
+            for eigenvalue in eigenvalues_of(response)
+            if eigenvalue.factor == factor
+            for name in (eigenvalue.mode.rate, eigenvalue.mode.frequency)
             if isinstance(name, str) and isinstance(constants[name].definition, RootPart)
         ]
-        if not names:
+        if not named:
             continue
         polynomial = polynomial_formula(response.field, factor.p, LAMBDA)
         statements = [Statement("polynomial", (polynomial, ZERO))]
@@ -212,7 +213,7 @@ def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
             {
                 "even": even,
                 "degree": factor.degree,
-                "rows": [_row(constants[name], digits) for name in names],
+                "rows": [_row(eigenvalue, constant, digits) for eigenvalue, constant in named],
             },
             rests_on=("eigenvalues",),
             depth="summary",
@@ -233,15 +234,15 @@ def _even_statements(response: Response, factor: Factor) -> list[Statement]:
     ]
 
 
-def _row(constant: NamedConstant, digits: int) -> dict[str, object]:
+def _row(eigenvalue: Eigenvalue, constant: NamedConstant, digits: int) -> dict[str, object]:
     definition = constant.definition
     if not isinstance(definition, RootPart):
         raise TypeError("only parts of roots have rows here")
     return {
         "name": Name(constant.name),
-        "definition": None,
         "interval": isolating_interval(definition),
         "part": definition.part,
-        "which": definition.which,
+        "eigenvalue": eigenvalue_symbol(eigenvalue.numbers),
+        "real": eigenvalue.mode.kind == "real",
         "decimal": constant_decimal(constant, digits),
     }

@@ -10,12 +10,15 @@ from dataclasses import dataclass, field
 from typing import Literal
 
 from closedform.notation.expression import Expression, Name
+from closedform.verification.record import VerificationRecord
 
 __all__ = ["IMAGINARY_UNIT", "Depth", "Derivation", "Matrix", "Side", "Statement", "Step", "Symbol"]
 
 IMAGINARY_UNIT = Name("@i")
 """The upright i.  No model can name a quantity so; a state ``i`` stays an italic letter."""
 
+
+_NOTHING_PROVED = VerificationRecord(())
 
 Depth = Literal["summary", "working", "full"]
 """How much of a derivation is shown, from little to all."""
@@ -77,7 +80,11 @@ class Step:
 
 @dataclass(frozen=True, slots=True)
 class Derivation:
-    """The steps in the order in which they follow from one another."""
+    """The steps in the order in which they follow from one another.
+
+    `record` is what was proved: about the response, and that the steps are true as printed.
+    """
 
     title: str
     steps: tuple[Step, ...]
+    record: VerificationRecord = _NOTHING_PROVED

@@ -42,7 +42,8 @@ def write_up(
     `digits` are the significant digits of the tables.
 
     Raises:  TemplateError if there is no such template;
-             ResponseRefutedError if any identity is refuted (then nothing is written);
+             ResponseRefutedError if any identity is refuted, StatementRefutedError if a
+             statement of the derivation is (then nothing is written);
              CannotWriteError if a file cannot be written.
     """
     check_template(template)
@@ -50,13 +51,14 @@ def write_up(
     verification = verify(response)
     if not verification.holds:
         raise ResponseRefutedError(model.name, verification.refuted)
-    text = render(derive(response, verification, digits=digits), template=template, depth=depth)
+    derivation = derive(response, verification, digits=digits)
+    text = render(derivation, template=template, depth=depth)
     folder = Path(into)
     files = [write_whole(folder / f"{model.name}.tex", text)]
     if record:
         path = folder / f"{model.name}.record.json"
-        files.append(write_whole(path, record_text(response, verification)))
-    return WriteUp(response, verification, tuple(files))
+        files.append(write_whole(path, record_text(response, derivation.record)))
+    return WriteUp(response, derivation.record, tuple(files))
 
 
 def write_pdf(write_up: WriteUp) -> Path:

@@ -411,6 +411,9 @@ def test_a_write_up_writes_this_record(tmp_path: Path) -> None:
     written = closedform.write_up(response.model, into=tmp_path)
     path = tmp_path / "mixed.record.json"
     assert path in written.files
-    assert path.read_text("utf-8") == record_text(response, verify(response))
+    assert path.read_text("utf-8") == record_text(response, written.verification)
+    *checks, last = written.verification.checks
+    assert tuple(checks) == verify(response).checks
+    assert (last.item, last.outcome) == ("statements of the derivation", "enclosed")
     closedform.write_up(response.model, into=tmp_path / "bare", record=False)
     assert [p.suffix for p in (tmp_path / "bare").iterdir()] == [".tex"]

@@ -155,10 +155,12 @@ def ten_named(*, several: bool = True) -> Derivation:
                     "rows": [
                         {
                             "name": Name(w),
-                            "definition": None,
                             "part": "imaginary",
-                            "which": 10 - i,
-                            "interval": ("1.21", "1.22") if i else None,
+                            "eigenvalue": Symbol(
+                                "scalar", (f"{2 * i + 1},{2 * i + 2}",), letter="lambda"
+                            ),
+                            "real": False,
+                            "interval": ("1.21", "1.22"),
                             "decimal": f"1.2{i}34567",
                         }
                         for i, w in enumerate(omegas)

@@ -1,0 +1,205 @@
+"""Every statement and every table of a derivation, proved from what is printed.
+
+Nothing here asks how a statement was made: matrices and formulas are evaluated from
+their trees in complex balls, and held against A and x0 as the model has them, the
+isolated roots of the factors, and the matrix exponential of ball arithmetic.  Precision
+is doubled until all balls are narrow.
+Source:  F. Johansson, Arb: efficient arbitrary-precision midpoint-radius interval
+         arithmetic, IEEE Transactions on Computers 66 (2017).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator, Sequence
+
+from flint import ctx
+
+from closedform.derivation.proof import forms, resolvent, results, spectrum
+from closedform.derivation.proof.evaluation import expressions_in, names_in
+from closedform.derivation.proof.finding import Comparison, Fault, Finding, StatementRefutedError
+from closedform.derivation.proof.ground import Ground, letters_in, rows_of
+from closedform.derivation.step import IMAGINARY_UNIT, Statement, Step
+from closedform.notation.expression import Name
+from closedform.response.response import Response
+from closedform.verification.enclosures import trial_times
+from closedform.verification.record import Check
+
+__all__ = ["prove_statements"]
+
+_FIRST_BITS = 288
+_MOST_BITS = 1 << 14
+
+_STATEMENTS: dict[tuple[str, str], Callable[[Ground, Statement], Iterator[Finding]]] = {
+    ("model", "system"): spectrum.system_statement,
+    ("model", "matrix"): spectrum.matrix_statement,
+    ("model", "initial"): spectrum.initial_statement,
+    ("model", "output"): spectrum.output_definition,
+    ("characteristic_polynomial", "characteristic polynomial"): spectrum.polynomial_statement,
+    ("eigenvalues", "eigenvalues"): spectrum.eigenvalue_statement,
+    ("eigenvectors", "eigenvector equation"): forms.vector_equation,
+    ("eigenvectors", "generalized eigenvector equation"): forms.vector_equation,
+    ("eigenvectors", "eigenvector"): forms.eigenvector_statement,
+    ("eigenvectors", "generalized eigenvector"): forms.eigenvector_statement,
+    ("jordan_form", "P"): forms.basis_statement,
+    ("jordan_form", "J"): forms.form_statement,
+    ("jordan_form", "P inverse"): forms.inverse_statement,
+    ("real_form", "P"): forms.basis_statement,
+    ("real_form", "real form"): forms.form_statement,
+    ("real_form", "P inverse"): forms.inverse_statement,
+    ("exponential_of_form", "exp J"): forms.exponential_statement,
+    ("transition", "exp A"): forms.transition_statement,
+    ("solution", "solution of state"): results.function_statement,
+    ("outputs", "output"): results.function_statement,
+}
+"""What proves each statement, by the kind of its step and what it says."""
+
+_TOGETHER: dict[tuple[str, str], Callable[[Ground, Step, Statement], Iterator[Finding]]] = {
+    ("named_roots", "polynomial"): spectrum.polynomial_of_roots,
+    ("resolvent", "expansion"): resolvent.expansion,
+    ("resolvent", "denominator"): resolvent.denominator,
+    ("resolvent", "impulse response"): resolvent.impulse_response,
+}
+"""What proves a statement with others of its step."""
+
+_WITHIN = {
+    ("named_roots", "substitution"): "polynomial",
+    ("resolvent", "residue matrix"): "expansion",
+}
+"""A definition is proved where it is used: by which statement of the same step."""
+
+_FACTS: dict[str, Callable[[Ground, Step], Iterator[Finding]]] = {
+    "eigenvalues": spectrum.eigenvalue_rows,
+    "named_roots": spectrum.root_rows,
+    "eigenvectors": forms.eigenvector_facts,
+    "solution": results.shown_functions,
+    "outputs": results.shown_functions,
+    "abbreviations": results.constant_rows,
+    "values": results.value_rows,
+}
+
+_VARIABLES = {
+    "characteristic_polynomial": {"lambda"},
+    "named_roots": {"lambda", "mu"},
+    "resolvent": {"s"},
+    "abbreviations": {"lambda"},
+}
+
+
+def prove_statements(response: Response, steps: Sequence[Step], digits: int) -> Check:
+    """Return the check that every statement and every table of the steps holds as printed.
+
+    `digits` are the significant digits that the tables were asked for.
+
+    Raises:  StatementRefutedError for the first that does not hold, or of which a name or
+             a letter is not defined; ValueError for a kind of statement that nothing proves.
+    """
+    for finding in _undefined(response, steps):
+        raise StatementRefutedError(response.model.name, finding.place, finding.reason)
+    times = trial_times(response)
+    ground = Ground(response, steps, digits, (times[0], times[2]))
+    open_ = 0
+    for kinds in ({step.kind for step in steps} - {"values"}, {"values"}):
+        open_ += _settled(ground, [step for step in steps if step.kind in kinds])
+    statements = sum(len(step.statements) for step in steps)
+    left = f"; {open_} values in the table stay open, for the size of others" if open_ else ""
+    return Check(
+        "statements of the derivation",
+        "enclosed",
+        f"{statements} displayed statements and all decimals in tables were evaluated from what "
+        "is printed; they agree with the model, the isolated eigenvalues and the matrix "
+        f"exponential of ball arithmetic{left}",
+    )
+
+
+def _settled(ground: Ground, steps: Sequence[Step]) -> int:
+    """Prove some steps, more and more finely; return how many values are open in the end."""
+    bits = _FIRST_BITS
+    while True:
+        with ctx.workprec(bits):
+            wide = list(_wide(ground.afresh(), steps))
+        if not wide:
+            return 0
+        if bits >= _MOST_BITS:
+            break
+        bits *= 2
+    for comparison in wide:
+        if comparison.scale is None and comparison.margin is None:
+            raise StatementRefutedError(
+                ground.response.model.name, str(comparison), "it has no certain value"
+            )
+    return len(wide)
+
+
+def _wide(ground: Ground, steps: Sequence[Step]) -> Iterator[Comparison]:
+    """Return the comparisons that this precision does not settle.
+
+    Raises StatementRefutedError at the first thing that certainly is wrong.
+    """
+    for finding in _findings(ground, steps):
+        if isinstance(finding, Fault):
+            raise StatementRefutedError(ground.response.model.name, finding.place, finding.reason)
+        if finding.is_apart:
+            raise StatementRefutedError(
+                ground.response.model.name,
+                str(finding),
+                f"printed is {finding.printed.str(8)}, and true {finding.expected.str(8)}",
+            )
+        if not finding.is_settled:
+            yield finding
+
+
+def _findings(ground: Ground, steps: Sequence[Step]) -> Iterator[Finding]:
+    for step in steps:
+        for statement in step.statements:
+            if statement.relation != "=":
+                yield Fault(statement.says, f"the relation is {statement.relation}")
+            yield from _about(ground, step, statement)
+        if step.kind in _FACTS:
+            yield from _FACTS[step.kind](ground, step)
+
+
+def _about(ground: Ground, step: Step, statement: Statement) -> Iterator[Finding]:
+    key = (step.kind, statement.says)
+    if key in _STATEMENTS:
+        yield from _STATEMENTS[key](ground, statement)
+    elif key in _TOGETHER:
+        yield from _TOGETHER[key](ground, step, statement)
+    elif key in _WITHIN:
+        if _WITHIN[key] not in {other.says for other in step.statements}:
+            yield Fault(statement.says, "it is used nowhere")
+    else:
+        raise ValueError(f"nothing proves {statement.says!r} of the step {step.kind!r}")
+
+
+def _undefined(response: Response, steps: Sequence[Step]) -> Iterator[Fault]:
+    """Every name in a formula is defined in print, and no letter is a matrix twice."""
+    model = response.model
+    known = {model.time, IMAGINARY_UNIT.text, *_defined(steps)}
+    for step in steps:
+        allowed = known | _VARIABLES.get(step.kind, set())
+        if step.kind == "model":
+            allowed = {*model.states, *(o.name for o in model.outputs), model.time}
+        for statement in step.statements:
+            for side in statement.sides:
+                for formula in expressions_in(side):
+                    for name in sorted(names_in(formula) - allowed):
+                        yield Fault(statement.says, f"{name} is used and not defined")
+    seen = set()
+    for letter, _ in letters_in(steps):
+        if letter in seen:
+            yield Fault(f"{letter[1]}_{','.join(letter[2])}", "it is given twice")
+        seen.add(letter)
+
+
+def _defined(steps: Sequence[Step]) -> Iterator[str]:
+    """The names of constants that the steps define, in statements and in tables."""
+    for step in steps:
+        if step.kind == "eigenvalues":
+            for statement in step.statements:
+                if isinstance(statement.sides[0], Name):
+                    yield statement.sides[0].text
+        elif step.kind == "named_roots":
+            yield from (row["name"].text for row in rows_of(step))
+        elif step.kind == "abbreviations":
+            for row in rows_of(step):
+                yield from (c[0].text for c in row["constants"] if c is not None)
