@@ -69,13 +69,13 @@ def ball_check(response: Response, references: References) -> Check:
             found, expected = response.exponential.enclosure(ball_of(t)), references.at(t)
             return ((found[places[name]], expected[places[name]]) for name in names)
 
-        return compared(places, evaluate, where=f" at t = {t}")
+        return compared(places, evaluate, where=f" at time {t}")
 
     return check_of(
         "e^(At), numbers",
         map(finding, references.times),
         f"agree with the matrix exponential of ball arithmetic {AGREED} "
-        f"at t = {listed(references.times)}",
+        f"at the times {listed(references.times)}",
     )
 
 
@@ -91,10 +91,12 @@ def determinant_ball_check(response: Response, times: tuple[Fraction, ...]) -> C
 
         # elimination loses about this much with every row
         bits = START_BITS + 32 * n
-        return compared(["the determinant"], evaluate, where=f" at t = {t}", bits=bits, places=None)
+        return compared(
+            ["the determinant"], evaluate, where=f" at time {t}", bits=bits, places=None
+        )
 
     return check_of(
         "det e^(At), numbers",
         map(finding, times),
-        f"agree to {DIGITS} significant digits at t = {listed(times)}",
+        f"agree to {DIGITS} significant digits at the times {listed(times)}",
     )

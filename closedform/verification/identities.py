@@ -106,8 +106,8 @@ def initial_value_check(item: str, function: ExponentialMatrix, expected: FieldM
     """F(0) equals the expected matrix."""
     fault = _first_nonzero(function.at_zero() - expected)
     if fault is not None:
-        return Check(item, "refuted", f"entry {fault} differs at t = 0")
-    return Check(item, "proved", "t = 0 was put in: every entry is the one given")
+        return Check(item, "refuted", f"entry {fault} differs at time zero")
+    return Check(item, "proved", "time zero was put in: every entry is the one given")
 
 
 def output_check(response: Response) -> Check:

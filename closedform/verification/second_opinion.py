@@ -44,14 +44,14 @@ def mpmath_check(response: Response, times: tuple[Fraction, ...]) -> Check:
     return check_of(
         item,
         (_finding(response, t) for t in times),
-        f"agree with mpmath's matrix exponential {AGREED} at t = {listed(times)}",
+        f"agree with mpmath's matrix exponential {AGREED} at the times {listed(times)}",
     )
 
 
 def _finding(response: Response, t: Fraction) -> Finding:
     ours = _own_exponential(response, t)
     if ours is None:
-        return Finding("not attempted", f"not settled at t = {t} by {LIMIT_BITS} bits")
+        return Finding("not attempted", f"not settled at time {t} by {LIMIT_BITS} bits")
     # places before the point cost digits: entries may be of very different size
     digits = PLACES + _GUARD_DIGITS + _digits_before_point(response, t, ours)
     before: dict[str, Any] = {}
@@ -69,10 +69,10 @@ def _finding(response: Response, t: Fraction) -> Finding:
             return Finding("enclosed")
         for name, value in apart.items():
             if name in before and _agree(mp, before[name], value):
-                return Finding("refuted", f"{name} differs at t = {t}")
+                return Finding("refuted", f"{name} differs at time {t}")
         before, digits = apart, 2 * digits
     return Finding(
-        "not attempted", f"t = {t} asks for {digits} digits; done up to {MOST_DIGITS} digits"
+        "not attempted", f"time {t} asks for {digits} digits; done up to {MOST_DIGITS} digits"
     )
 
 

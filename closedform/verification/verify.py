@@ -49,7 +49,11 @@ def prove(response: Response) -> tuple[Check, ...]:
 
 
 def verify(response: Response) -> VerificationRecord:
-    """Return the whole record: the exact identities, then the certified comparisons."""
+    """Return what can be said of a response: exact identities, then certified comparisons.
+
+    Every check is made, whatever came of the others.  `holds` of the record says that none
+    was refuted; each check names its identity, the outcome, and how it was found.
+    """
     times = trial_times(response)
     references = References(response, times)
     values = NamedValues(response.closed_forms.constants)

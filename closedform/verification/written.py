@@ -34,13 +34,13 @@ def formula_check(response: Response, references: References, values: NamedValue
             expected = _expected(response, references.at(t))
             return ((enclose(parsed[name], known), expected[name]) for name in names)
 
-        return compared(parsed, evaluate, where=f" at t = {t}")
+        return compared(parsed, evaluate, where=f" at time {t}")
 
     return check_of(
         "formulas as written",
         map(finding, references.times),
         f"{len(parsed)} formulas were read back from their text; agree with the matrix "
-        f"exponential of ball arithmetic {AGREED} at t = {listed(references.times)}",
+        f"exponential of ball arithmetic {AGREED} at the times {listed(references.times)}",
     )
 
 
@@ -62,13 +62,13 @@ def impulse_check(response: Response, times: tuple[Fraction, ...], values: Named
                 for name in names
             )
 
-        return compared(parsed, evaluate, where=f" at t = {t}")
+        return compared(parsed, evaluate, where=f" at time {t}")
 
     return check_of(
         "functions g as written",
         map(finding, times),
         f"read back from their text; agree with the exponential of the companion matrix {AGREED} "
-        f"at t = {listed(times)}",
+        f"at the times {listed(times)}",
     )
 
 

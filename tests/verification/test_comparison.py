@@ -155,7 +155,7 @@ def test_a_wrong_formula_over_close_eigenvalues_is_refuted(name: str) -> None:
     right = response.closed_forms.transition[0][1]
     wrong = with_transition_entry(response, 0, 1, Product((three, right)))
     (check,) = verify(wrong).refuted
-    assert check.how.startswith("entry (1, 2) of e^(At) differs at t = ")
+    assert check.how.startswith("entry (1, 2) of e^(At) differs at time ")
 
 
 @pytest.mark.parametrize("places", [20, 40, 59])

@@ -115,8 +115,8 @@ def test_numbers_name_the_entry_that_a_flipped_sign_spoils(kind: str) -> None:
         exponential = with_number(response.exponential, place, -element)
         found = refuted(replace(response, exponential=exponential))
         entry = f"entry {(row + 1, column + 1)}"
-        assert found[NUMBERS].startswith(f"{entry} differs at t = ")
-        assert found[SECOND].startswith(f"{entry} differs at t = ")
+        assert found[NUMBERS].startswith(f"{entry} differs at time ")
+        assert found[SECOND].startswith(f"{entry} differs at time ")
         assert found[FORMULAS].startswith(f"{entry} of e^(At) differs")
 
 
@@ -212,7 +212,7 @@ def test_two_swapped_entries_are_refuted(kind: str) -> None:
         lambda r: replace(r, coefficients=tuple(map(swapped, r.coefficients))),
     )
     found = refuted(replace(response, exponential=wrong))
-    assert found[START] == "entry (1, 1) differs at t = 0"
+    assert found[START] == "entry (1, 1) differs at time zero"
     assert found[NUMBERS].startswith("entry (1, 1) differs")
     assert ODE in found
 
@@ -313,7 +313,7 @@ def test_another_initial_value_is_refuted(kind: str) -> None:
         rows[row][0] += response.field.domain.one
         other = response.field.matrix(rows)
         found = disproved(replace(response, initial=other))
-        assert found[STATE_START] == f"entry {(row + 1, 1)} differs at t = 0"
+        assert found[STATE_START] == f"entry {(row + 1, 1)} differs at time zero"
         assert STATE in found
         assert ODE not in found
 
@@ -326,7 +326,7 @@ def test_the_solution_of_another_initial_value_is_refuted(kind: str) -> None:
         rows[row][0] += response.field.domain.one
         other = response.exponential.times(response.field.matrix(rows))
         found = refuted(replace(response, state=other))
-        assert found[STATE_START] == f"entry {(row + 1, 1)} differs at t = 0"
+        assert found[STATE_START] == f"entry {(row + 1, 1)} differs at time zero"
         assert STATE in found
         assert FORMULAS in found
         assert STATE_ODE not in found
@@ -344,7 +344,7 @@ def test_a_wrong_number_in_the_solution_is_refuted(kind: str) -> None:
         assert STATE_ODE in found or STATE_START in found
         assert not {ODE, START, ROUTES} & set(found)
     found = refuted(replace(response, state=wrong))
-    assert found[FORMULAS].startswith(f"state x{row + 1} differs at t = ")
+    assert found[FORMULAS].startswith(f"state x{row + 1} differs at time ")
     assert NUMBERS not in found
 
 
@@ -358,7 +358,7 @@ def test_an_output_with_another_weight_is_refuted(kind: str) -> None:
             weights[number][k] += field.domain.one
             found = refuted(replace(response, output=response.state.after(field.matrix(weights))))
             assert found[OUTPUTS] == f"output {number + 1} is another combination"
-            assert found[FORMULAS].startswith(f"output {output.name} differs at t = ")
+            assert found[FORMULAS].startswith(f"output {output.name} differs at time ")
             assert set(found) == {OUTPUTS, FORMULAS}
 
 
@@ -535,7 +535,7 @@ def test_every_slip_of_the_pen_in_one_entry_of_each_kind_is_refuted(kind: str) -
             found = refuted(put(other))
             assert FORMULAS in found
             assert re.fullmatch(
-                rf"{re.escape(name)} (differs|is not settled) at t = .*", found[FORMULAS]
+                rf"{re.escape(name)} (differs|is not settled) at time .*", found[FORMULAS]
             )
     assert len(seen) >= 6
 
@@ -703,7 +703,7 @@ def test_a_formula_that_has_no_value_is_refuted() -> None:
     zero = Sum((Name("t"), Negation(Name("t"))))
     bad = Call("sqrt", Sum((zero, Negation(Number(Fraction(1))))))
     found = refuted(with_formula(response, "solution", 0, bad))
-    assert found[FORMULAS].startswith("state x1 has no value at t = ")
+    assert found[FORMULAS].startswith("state x1 has no value at time ")
 
 
 def with_cancellation(response: Response, height: int, error: Fraction) -> Response:
@@ -722,13 +722,13 @@ def test_a_formula_that_loses_thousands_of_digits_is_told_right_from_wrong() -> 
     assert formulas_of(with_cancellation(response, 9, Fraction(0))).outcome == "enclosed"
     check = formulas_of(with_cancellation(response, 9, Fraction(1, 10**25)))
     assert check.outcome == "refuted"
-    assert check.how.startswith("state x1 differs at t = ")
+    assert check.how.startswith("state x1 differs at time ")
 
 
 def test_a_formula_too_wide_to_tell_at_the_limit_is_not_called_agreement() -> None:
     check = formulas_of(with_cancellation(response_to("one state"), 11, Fraction(0)))
     assert check.outcome == "not attempted"
-    assert check.how.startswith("state x1 is not settled at t = 1/12 by 32768 bits")
+    assert check.how.startswith("state x1 is not settled at time 1/12 by 32768 bits")
 
 
 # --- random faults in random systems -------------------------------------------------------
@@ -827,7 +827,7 @@ def test_the_error_names_the_model_the_identity_and_the_entry() -> None:
     assert isinstance(error, RefutedError)
     text = str(error)
     assert text.startswith("bench: ")
-    assert f"{START}: entry (1, 1) differs at t = 0" in text
+    assert f"{START}: entry (1, 1) differs at time zero" in text
     assert f"{DETERMINANT}: a spectral projector has the wrong trace" in text
     assert "\n" not in text
 

@@ -44,9 +44,9 @@ def test_a_wrong_small_entry_beside_a_huge_one_is_refuted(size: int) -> None:
         wrong = replace(response, exponential=with_number(response.exponential, place, value))
         check = mpmath_check(wrong, times)
         assert check.outcome == "refuted"
-        assert check.how == f"entry (2, 2) differs at t = {times[0]}"
+        assert check.how == f"entry (2, 2) differs at time {times[0]}"
         check = ball_check(wrong, References(wrong, times))
-        assert check.how == f"entry (2, 2) differs at t = {times[0]}"
+        assert check.how == f"entry (2, 2) differs at time {times[0]}"
 
 
 def test_entries_that_ask_for_absurdly_many_digits_are_left_open() -> None:
@@ -64,7 +64,7 @@ def test_the_determinant_is_compared_to_significant_digits(size: int) -> None:
     factor = response.field.polynomial([slightly])
     wrong = every_residue(response.exponential, lambda r: r.scaled(factor))
     check = determinant_ball_check(replace(response, exponential=wrong), times)
-    assert check.how == f"the determinant differs at t = {times[0]}"
+    assert check.how == f"the determinant differs at time {times[0]}"
 
 
 def test_a_determinant_that_vanishes_in_all_digits_is_refuted() -> None:
