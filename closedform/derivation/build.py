@@ -34,7 +34,7 @@ def derive(response: Response, record: VerificationRecord, *, digits: int = 6) -
     """Return the derivation of a response that holds, with `digits` figures in its tables.
 
     Every statement and table in it is proved once more as it will be printed, and the
-    derivation's `record` has that as its last check.
+    derivation's last check says so.
 
     Raises:  ValueError if the record does not hold: nothing is derived from a refuted result;
              StatementRefutedError if a step states what does not hold.
@@ -42,9 +42,9 @@ def derive(response: Response, record: VerificationRecord, *, digits: int = 6) -
     if not record.holds:
         raise ValueError("only a response that was proved is derived")
     steps = tuple(_steps(response, digits))
-    whole = VerificationRecord((*record.checks, prove_statements(response, steps, digits)))
-    ends = (verification_step(whole), cautions_step())
-    return Derivation(response.model.title, (*steps, *ends), whole)
+    checks = (*record.checks, prove_statements(response, steps, digits))
+    ends = (verification_step(checks), cautions_step())
+    return Derivation(response.model.title, (*steps, *ends), checks)
 
 
 def _steps(response: Response, digits: int) -> Iterator[Step]:

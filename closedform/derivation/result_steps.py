@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.identities import printed_item
 from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
@@ -10,7 +12,7 @@ from closedform.notation.plain import plain
 from closedform.response.amounts import surd_formula
 from closedform.response.response import LARGEST_WRITTEN_OUT, Response
 from closedform.response.sampling import default_times, sampled
-from closedform.verification.record import VerificationRecord
+from closedform.verification.record import Check
 
 __all__ = [
     "cautions_step",
@@ -119,11 +121,11 @@ def _terminating(numerator: int, denominator: int) -> str:
     return f"{sign}{whole}.{part}" if part else f"{sign}{whole}"
 
 
-def verification_step(record: VerificationRecord) -> Step:
+def verification_step(checks: Sequence[Check]) -> Step:
     """List what was proved or enclosed, and how."""
     rows = [
         {"item": printed_item(check.item), "outcome": check.outcome, "how": check.how}
-        for check in record.checks
+        for check in checks
     ]
     return Step("verification", (), {"rows": rows}, depth="summary")
 

@@ -7,18 +7,18 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
 from closedform.notation.expression import Expression, Name
-from closedform.verification.record import VerificationRecord
+
+if TYPE_CHECKING:  # a step is light, and the room of proofs is not
+    from closedform.verification.record import Check
 
 __all__ = ["IMAGINARY_UNIT", "Depth", "Derivation", "Matrix", "Side", "Statement", "Step", "Symbol"]
 
 IMAGINARY_UNIT = Name("@i")
 """The upright i.  No model can name a quantity so; a state ``i`` stays an italic letter."""
 
-
-_NOTHING_PROVED = VerificationRecord(())
 
 Depth = Literal["summary", "working", "full"]
 """How much of a derivation is shown, from little to all."""
@@ -82,9 +82,9 @@ class Step:
 class Derivation:
     """The steps in the order in which they follow from one another.
 
-    `record` is what was proved: about the response, and that the steps are true as printed.
+    `checks` are what was proved: about the response, and that the steps are true as printed.
     """
 
     title: str
     steps: tuple[Step, ...]
-    record: VerificationRecord = _NOTHING_PROVED
+    checks: tuple[Check, ...] = ()

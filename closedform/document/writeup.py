@@ -52,13 +52,14 @@ def write_up(
     if not verification.holds:
         raise ResponseRefutedError(model.name, verification.refuted)
     derivation = derive(response, verification, digits=digits)
+    verification = VerificationRecord(derivation.checks)
     text = render(derivation, template=template, depth=depth)
     folder = Path(into)
     files = [write_whole(folder / f"{model.name}.tex", text)]
     if record:
         path = folder / f"{model.name}.record.json"
-        files.append(write_whole(path, record_text(response, derivation.record)))
-    return WriteUp(response, derivation.record, tuple(files))
+        files.append(write_whole(path, record_text(response, verification)))
+    return WriteUp(response, verification, tuple(files))
 
 
 def write_pdf(write_up: WriteUp) -> Path:

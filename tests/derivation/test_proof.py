@@ -45,7 +45,7 @@ from tests.response.systems import KINDS, response_to
 @pytest.mark.parametrize("kind", KINDS)
 @pytest.mark.parametrize("digits", [1, 4, 25])
 def test_every_kind_of_derivation_is_proved(kind: str, digits: int) -> None:
-    last = derivation_of(response_to(kind), digits).record.checks[-1]
+    last = derivation_of(response_to(kind), digits).checks[-1]
     assert (last.item, last.outcome) == ("statements of the derivation", "enclosed")
     assert "open" not in last.how
 
@@ -65,16 +65,16 @@ FURTHER: dict[str, list[list[Any]]] = {
 
 @pytest.mark.parametrize("name", FURTHER)
 def test_further_derivations_are_proved(name: str) -> None:
-    last = derivation_of(responded(FURTHER[name])).record.checks[-1]
+    last = derivation_of(responded(FURTHER[name])).checks[-1]
     assert last.outcome == "enclosed"
     assert "open" not in last.how
 
 
 def test_a_value_beyond_reach_is_counted_as_open() -> None:
-    """Of x2 = e^(-t) nothing is left beside e^(t) at t = 10^5, in the exponential of balls."""
+    """Of x2 = e^(-t) nothing is left beside e^(t) at time 10^5, in the exponential of balls."""
     model = closedform.system([[0, 1], [1, 0]], initial=[1, -1], times=["100000"])
     response = closedform.respond(model)
-    last = derive(response, verify(response)).record.checks[-1]
+    last = derive(response, verify(response)).checks[-1]
     assert last.outcome == "enclosed"
     assert "2 values in the table stay open" in last.how
 

@@ -165,7 +165,7 @@ def test_the_record_is_listed_check_by_check(kind: str) -> None:
     response = response_to(kind)
     (step,) = steps_of(derivation_of(response), "verification")
     rows = step.facts["rows"]
-    checks = derivation_of(response).record.checks
+    checks = derivation_of(response).checks
     assert checks[:-1] == verify(response).checks
     assert checks[-1].item == "statements of the derivation"
     assert [(r["outcome"], r["how"]) for r in rows] == [(c.outcome, c.how) for c in checks]
