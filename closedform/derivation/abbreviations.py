@@ -12,13 +12,13 @@ from dataclasses import dataclass
 from closedform.algebra.field import Polynomial
 from closedform.derivation.formulas import LAMBDA, eigenvalue_formula, polynomial_formula
 from closedform.derivation.step import Step
-from closedform.notation.expression import Call, Expression, Name, Number
+from closedform.notation.expression import Name
 from closedform.response.modes import Mode
 from closedform.response.names import NamedConstant, ResiduePart
 from closedform.response.response import Response
 from closedform.response.sampling import constant_decimal
 
-__all__ = ["abbreviations_step", "names_in"]
+__all__ = ["abbreviations_step"]
 
 
 @dataclass(frozen=True)
@@ -87,23 +87,3 @@ def _mode(response: Response, key: _Key) -> Mode:
         for mode in modes
         if mode.factor.p == key.polynomial and mode.which == key.which
     )
-
-
-def names_in(expressions: Iterator[Expression]) -> frozenset[str]:
-    """Return every name that the formulas use."""
-    found: set[str] = set()
-    pending = list(expressions)
-    while pending:
-        expression = pending.pop()
-        match expression:
-            case Name(text):
-                found.add(text)
-            case Number():
-                pass
-            case Call(_, argument):
-                pending.append(argument)
-            case _:
-                for attribute in expression.__slots__:
-                    value = getattr(expression, attribute)
-                    pending += value if isinstance(value, tuple) else [value]
-    return frozenset(found)

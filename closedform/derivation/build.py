@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from closedform.derivation.abbreviations import abbreviations_step, names_in
+from closedform.derivation.abbreviations import abbreviations_step
 from closedform.derivation.canonical_steps import canonical_steps
 from closedform.derivation.proof import prove_statements
+from closedform.derivation.proof.evaluation import names_in
 from closedform.derivation.resolvent_steps import resolvent_steps
 from closedform.derivation.result_steps import (
     cautions_step,
@@ -67,7 +68,8 @@ def _steps(response: Response, digits: int) -> Iterator[Step]:
     if response.model.outputs:
         shown.append(outputs_step(response))
     yield from shown
-    abbreviations = abbreviations_step(response, names_in(_formulas(shown)), digits)
+    names = frozenset(name for formula in _formulas(shown) for name in names_in(formula))
+    abbreviations = abbreviations_step(response, names, digits)
     if abbreviations is not None:
         yield abbreviations
     yield values_step(response, digits)

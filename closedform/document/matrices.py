@@ -5,6 +5,7 @@ from __future__ import annotations
 from fractions import Fraction
 from math import lcm
 
+from closedform.derivation.proof import require_equal
 from closedform.derivation.step import Matrix
 from closedform.notation.expression import (
     Call,
@@ -66,10 +67,15 @@ def with_front(matrix: Matrix) -> Matrix:
     A common exponential, root or fraction is taken out of every entry that is not zero;
     of a matrix of rational numbers, the common denominator is.  A matrix that has a
     front already, or whose entries share nothing, comes back as it is.
+
+    Raises:  StatementRefutedError if front times what is left is not the entry it was.
     """
     if matrix.front is not None:
         return matrix
-    return _by_denominator(matrix) or _by_factor(matrix)
+    found = _by_denominator(matrix) or _by_factor(matrix)
+    if found is not matrix:
+        require_equal(found, matrix)
+    return found
 
 
 def _by_denominator(matrix: Matrix) -> Matrix | None:

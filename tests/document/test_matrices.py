@@ -1,8 +1,12 @@
 from __future__ import annotations
 
+import pytest
+
+from closedform.derivation.proof import StatementRefutedError, require_equal
 from closedform.derivation.step import Matrix
+from closedform.document import matrices
 from closedform.document.matrices import matrix_box, matrix_height, with_front
-from closedform.notation.expression import Product
+from closedform.notation.expression import Product, number
 from tests.document.making import T, add, column, exp, matrix, neg, prod, q
 
 
@@ -21,6 +25,27 @@ def test_several_common_factors_are_set_in_front() -> None:
 def test_common_denominators_are_set_in_front() -> None:
     given = matrix(("2/3", "1/3"), ("-1/3", 1))
     assert with_front(given) == Matrix(((q(2), q(1)), (q(-1), q(3))), q("1/3"))
+
+
+def test_a_wrong_rest_is_refused(monkeypatch: pytest.MonkeyPatch) -> None:
+    e = exp(-2)
+    given = matrix((e, prod(T, e)), (0, neg(prod(3, e))))
+    monkeypatch.setattr(matrices, "_without", lambda entry, _: entry)
+    with pytest.raises(StatementRefutedError, match=r"entry \(1, 1\)"):
+        with_front(given)
+
+
+def test_a_wrong_common_denominator_is_refused(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(matrices, "number", lambda value: number(value + 1))
+    with pytest.raises(StatementRefutedError, match=r"entry \(1, 1\)"):
+        with_front(matrix(("2/3", "1/3"), ("-1/3", 1)))
+
+
+def test_matrices_are_equal_as_values_of_every_name() -> None:
+    require_equal(Matrix(((add("a", "b"),),), q(2)), matrix((add(prod(2, "a"), prod(2, "b")),)))
+    for other in (matrix(("a",)), matrix(("a", "b")), matrix((prod("a", "a"),))):
+        with pytest.raises(StatementRefutedError):
+            require_equal(other, matrix(("b",)))
 
 
 def test_what_is_not_shared_stays() -> None:
