@@ -13,7 +13,6 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     identity                   letter [I]                          I
     zero                       -                                   0 (bold)
     inverse                    letter [P] indices                  P^(-1)
-    transpose                  letter [A] indices                  A^T
     derivative                 letter [x] indices argument order   x',  x'(t)
     transition                 letter [A] argument [t]             e^(At)
     exponential                letter [J] argument [t]             e^(Jt)
@@ -27,10 +26,7 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     real pair                  parts: mean a, half distance b      a +- b
     sum                        parts: sides                        R_0 g + R_1 g'
     quotient                   parts: above, below                 r(lambda) / p'(lambda)
-    real part                  parts: one side                     Re z
-    imaginary part             parts: one side                     Im z
     time derivative            argument [t]                        d/dt
-    dots                       -                                   ...
 
 `IMAGINARY_UNIT` of closedform.derivation.step is the upright i inside formulas.
 """
@@ -60,7 +56,7 @@ ANY_ROW = r"\cdot"
 """The first index of an entry that stands for a whole column."""
 
 COMPOUND = frozenset({"pair", "real pair", "sum", "shifted"})
-LETTERS = frozenset({"matrix", "vector", "inverse", "transpose", "identity", "zero", "derivative"})
+LETTERS = frozenset({"matrix", "vector", "inverse", "identity", "zero", "derivative"})
 
 
 def side_box(side: Side) -> Box:
@@ -142,10 +138,6 @@ def _derivative(symbol: Symbol) -> Box:
 
 def _inverse(symbol: Symbol) -> Box:
     return _raised(_bold(symbol, "P"), "-1", 1.1)
-
-
-def _transpose(symbol: Symbol) -> Box:
-    return _raised(_bold(symbol, "A"), r"\mathsf{T}", 0.6)
 
 
 def _exponential(letter: str) -> Callable[[Symbol], Box]:
@@ -259,16 +251,6 @@ def _quotient(symbol: Symbol) -> Box:
     return Box(rf"\frac{{{above.latex}}}{{{below.latex}}}", wide, 2)
 
 
-def _part(operator: str) -> Callable[[Symbol], Box]:
-    def setter(symbol: Symbol) -> Box:
-        inside = side_box(symbol.parts[0])
-        if _binds_loosely(symbol.parts[0]):
-            inside = bracketed(inside)
-        return joined(plain(rf"\operatorname{{{operator}}}", 1.5), inside)
-
-    return setter
-
-
 KINDS: dict[str, Callable[[Symbol], Box]] = {
     "matrix": _lettered("A"),
     "vector": _lettered("x"),
@@ -276,7 +258,6 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "identity": _lettered("I"),
     "zero": lambda _: plain(r"\boldsymbol{0}", 0.6),
     "inverse": _inverse,
-    "transpose": _transpose,
     "derivative": _derivative,
     "transition": _exponential("A"),
     "exponential": _exponential("J"),
@@ -289,8 +270,5 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "real pair": _real_pair,
     "sum": _sum,
     "quotient": _quotient,
-    "real part": _part("Re"),
-    "imaginary part": _part("Im"),
-    "dots": lambda _: plain(r"\cdots", 1.2),
     "time derivative": _time_derivative,
 }

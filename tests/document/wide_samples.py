@@ -197,7 +197,7 @@ def ten_named(*, several: bool = True) -> Derivation:
             Step(
                 "transition",
                 (says("exp A", TRANSITION, Matrix(entries)),),
-                {"layout": "entries", "route": "resolvent"},
+                {"route": "resolvent"},
             ),
             Step(
                 "solution",
