@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from fractions import Fraction
 from math import gcd, isqrt, lcm
 
-from closedform.algebra.surds import SurdSum, square_part
+from closedform.algebra.surds import SurdSum, drawn_out, root_of_rational
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -34,13 +34,14 @@ ONE = Number(Fraction(1))
 
 
 def square_root_of_surd(value: SurdSum) -> SurdSum | None:
-    """Return the square root of a number > 0 as a surd sum, or None if it is none.
+    """Return the square root of a number > 0 as a surd sum, or None if none is found.
 
+    None may also say that numbers too large to be factored stand below the root.
     sqrt(A + B sqrt(d)) = sqrt((A + c)/2) ± sqrt((A - c)/2) when c = sqrt(A^2 - B^2 d) is
     rational.  Source:  Euclid, Elements, book X; common practice.
     """
     if value.is_rational:
-        return value.sqrt()
+        return root_of_rational(value.as_fraction())
     terms = dict(value.terms)
     whole = terms.pop(1, Fraction(0))
     if len(terms) != 1 or whole <= 0:
@@ -50,21 +51,22 @@ def square_root_of_surd(value: SurdSum) -> SurdSum | None:
     if norm < 0 or not _is_square(norm):
         return None
     c = _root(norm)
-    plus = SurdSum.rational((whole + c) / 2).sqrt()
-    minus = SurdSum.rational((whole - c) / 2).sqrt()
+    plus, minus = root_of_rational((whole + c) / 2), root_of_rational((whole - c) / 2)
+    if plus is None or minus is None:
+        return None
     return plus + minus if slope > 0 else plus - minus
 
 
 def radical_formula(square: SurdSum) -> Expression:
     """Return the formula of sqrt(square): no nested root where there is a short form.
 
-    Else square factors are drawn out: 20 sqrt(2 - sqrt(2)).
+    Else square factors are drawn out, as far as they are known: 20 sqrt(2 - sqrt(2)).
     """
     root = square_root_of_surd(square)
     if root is not None:
         return surd_formula(root)
     content = _rational_content([square])
-    whole, _ = square_part(content.numerator * content.denominator)
+    whole, _ = drawn_out(content.numerator * content.denominator)
     outside = Fraction(whole, content.denominator)
     inside = square * SurdSum.rational(1 / outside**2)
     return weighted(SurdSum.rational(outside), [Call("sqrt", surd_formula(inside))], [])

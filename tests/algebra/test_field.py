@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import pickle
 from fractions import Fraction
 
 import pytest
@@ -9,8 +10,10 @@ from flint import arb, ctx, fmpq
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from closedform.algebra.field import BaseField, base_field
+import closedform
+from closedform.algebra.field import MOST_ROOTS, BaseField, TooManyRootsError, base_field
 from closedform.algebra.surds import SurdSum
+from closedform.errors import InputError
 
 FIELDS = [BaseField(), BaseField((2,)), BaseField((2, 3)), BaseField((6, 10)), BaseField((2, 3, 5))]
 BASES = {
@@ -69,6 +72,32 @@ def test_a_number_of_several_roots_brings_them_all() -> None:
     assert field.surds(field.scalar(number)) == number
     three = root(3)  # sqrt(3) = sqrt(2) sqrt(6)/2 is in the field, though nobody wrote it
     assert field.surds(field.scalar(three)) == three
+
+
+def test_products_of_large_radicands_are_not_factored() -> None:
+    p, q, r = 10**23 + 117, 10**24 + 7, 10**25 + 13
+    field = base_field([root(p * q), root(p * r)])
+    x = SurdSum.of({p * q: Fraction(2), p * r: Fraction(-1, 3), q * r: Fraction(5), 1: Fraction(1)})
+    assert field.surds(field.scalar(x)) == x
+    assert field.surds(field.scalar(x) * field.scalar(x)) == x * x
+
+
+def test_more_independent_roots_than_are_computed_with_are_refused() -> None:
+    primes = [2, 3, 5, 7, 11, 13, 17, 19]
+    assert base_field([root(d) for d in (*primes[:MOST_ROOTS], 6, 10)]).radicands == tuple(
+        primes[:MOST_ROOTS]
+    )
+    with pytest.raises(TooManyRootsError, match=r"sqrt\(2\), sqrt\(3\)") as caught:
+        closedform.respond(
+            closedform.system(
+                [[" + ".join(f"sqrt({d})" for d in primes)]], initial=[1], states=["x"]
+            )
+        )
+    assert isinstance(caught.value, InputError)
+    again = pickle.loads(pickle.dumps(caught.value))  # noqa: S301
+    assert again.limit == MOST_ROOTS
+    assert again.radicands == tuple(primes[: MOST_ROOTS + 1])
+    assert str(again) == str(caught.value)
 
 
 def test_a_number_outside_the_field_is_refused() -> None:

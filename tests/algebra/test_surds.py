@@ -9,8 +9,14 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from closedform.algebra.surds import LARGEST_RADICAND, SurdSum, square_part
+from closedform.algebra.surds import (
+    SurdSum,
+    drawn_out,
+    root_of_rational,
+    square_part,
+)
 
+LARGE_PRIMES = (10**30 + 57, 10**31 + 33)
 SURDS = st.dictionaries(
     st.sampled_from([1, 2, 3, 5, 6, 10, 15, 77]), st.fractions(max_denominator=9), max_size=4
 ).map(SurdSum.of)
@@ -19,8 +25,6 @@ SURDS = st.dictionaries(
 @given(st.dictionaries(st.sampled_from([2, 3, 5, 7, 999983]), st.integers(0, 3), max_size=3))
 def test_the_square_part_is_split_off(exponents: dict[int, int]) -> None:
     n = prod(p**k for p, k in exponents.items())
-    if n > LARGEST_RADICAND:
-        return
     expected = prod(p for p, k in exponents.items() if k % 2)
     root, free = square_part(n)
     assert root * root * free == n
@@ -28,9 +32,28 @@ def test_the_square_part_is_split_off(exponents: dict[int, int]) -> None:
 
 
 def test_a_large_number_is_refused_unless_it_is_a_square() -> None:
-    assert square_part(10**40) == (10**20, 1)
+    assert square_part(10**80) == (10**40, 1)
     with pytest.raises(ValueError, match="up to 1e"):
-        square_part(LARGEST_RADICAND + 1)
+        square_part(LARGE_PRIMES[0] * LARGE_PRIMES[1])
+
+
+@pytest.mark.parametrize("n", [10**24 * 77, 394784176044**2 * 5, 2**5 * (10**44 + 31)])
+def test_squares_are_drawn_out_of_numbers_as_decimals_make_them(n: int) -> None:
+    root, free = square_part(n)
+    assert root * root * free == n
+    assert drawn_out(n) == (root, free)
+    assert root > 1
+
+
+def test_of_larger_numbers_small_squares_are_drawn_out() -> None:
+    p, q = LARGE_PRIMES
+    assert drawn_out(p * q * 997**3 * 9) == (3 * 997, p * q * 997)
+    assert root_of_rational(Fraction(p * q)) is None
+    assert root_of_rational(Fraction(1, p * q)) is None
+    assert root_of_rational(Fraction(p * p, q * q)) == SurdSum.rational(Fraction(p, q))
+    assert root_of_rational(Fraction(0)) == SurdSum(())
+    with pytest.raises(ValueError, match="up to 1e"):
+        SurdSum.rational(p * q).sqrt()
 
 
 def test_a_fraction_needs_its_two_parts_factored_only() -> None:

@@ -127,6 +127,21 @@ def test_nested_roots_are_undone_where_there_is_a_short_form(square: SurdSum, te
         assert plain(found) == text
 
 
+@pytest.mark.parametrize(
+    "square",
+    [
+        surds(r1=(10**30 + 57) * (10**31 + 33)),
+        surds(r1=Fraction((10**30 + 57) * (10**31 + 33) * 44, 9 * (10**40 + 121))),
+        surds(r1=2 * 10**60 + 2, r2=10**60),
+    ],
+    ids=["integer", "fraction", "nested"],
+)
+def test_roots_of_numbers_too_large_to_factor_stay_roots(square: SurdSum) -> None:
+    assert square_root_of_surd(square) is None
+    with ctx.workprec(500):
+        assert (value_of(radical_formula(square), {}) ** 2).overlaps(ball_of(square))
+
+
 def test_sums_are_flat_and_start_with_a_positive_term() -> None:
     minus_x = Negation(X)
     assert sum_of([]) == Number(Fraction(0))
