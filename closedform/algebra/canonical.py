@@ -19,7 +19,12 @@ from operator import add
 from typing import Any
 
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
-from closedform.algebra.root_matrix import RootMatrix, taylor_at_root
+from closedform.algebra.root_matrix import (
+    RootMatrix,
+    series_inverse,
+    series_product,
+    taylor_at_root,
+)
 from closedform.algebra.spectrum import Factor, Spectrum, polynomial_of_matrix
 
 __all__ = ["JordanChain", "JordanForm", "jordan_form"]
@@ -57,11 +62,11 @@ class JordanChain:
         for k in range(self.size):
             weight = field.domain.convert(comb(power, k))
             shifted.append((lam ** max(power - k, 0)).mul_ground(weight).rem(p))
-        return tuple(reversed(_series_product(shifted, self._inverse_tau, p)))
+        return tuple(reversed(series_product(shifted, self._inverse_tau, p)))
 
     @cached_property
     def _inverse_tau(self) -> list[Polynomial]:
-        return _series_inverse(list(self.tau), self.factor.p)
+        return series_inverse(list(self.tau), self.factor.p)
 
 
 @dataclass(frozen=True)
@@ -194,7 +199,7 @@ def _chain(
     tau = [field.polynomial([field.domain.one])]
     tau += [field.polynomial([field.domain.zero])] * (size - 1)
     for _ in range(size):
-        tau = _series_product(tau, q, p)
+        tau = series_product(tau, q, p)
     chain = JordanChain(factor, generator, tuple(reversed(vectors)), tuple(tau))
     scales = _scales(chain) if matrix.shape[0] <= _LARGEST_TO_POLISH else iter(())
     return _shortest([_primitive(chain), *(_primitive(_scaled(chain, s)) for s in scales)])
@@ -271,22 +276,6 @@ def _digits(field: BaseField, element: Scalar) -> int:
         len(str(abs(n))) + 2 * (d != 1) + 2 * (radicand != 1) + (n < 0)
         for n, d, radicand in field.rational_parts(element)
     )
-
-
-def _series_product(
-    left: list[Polynomial], right: list[Polynomial], p: Polynomial
-) -> list[Polynomial]:
-    """Multiply two power series over L, both cut off at the same order."""
-    return [_total([left[i] * right[k - i] for i in range(k + 1)]).rem(p) for k in range(len(left))]
-
-
-def _series_inverse(series: list[Polynomial], p: Polynomial) -> list[Polynomial]:
-    first = series[0].invert(p)
-    inverse = [first]
-    for k in range(1, len(series)):
-        total = _total([series[i] * inverse[k - i] for i in range(1, k + 1)])
-        inverse.append((-(total.rem(p)) * first).rem(p))
-    return inverse
 
 
 def _total(summands: Sequence[Any]) -> Any:

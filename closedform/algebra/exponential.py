@@ -12,6 +12,7 @@ the R_j small: for a simple factor that is all of the spectrum, R_0 is the adjug
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 from math import factorial
@@ -20,7 +21,12 @@ from flint import arb, arb_mat
 
 from closedform.algebra.enclosure import value_at
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial
-from closedform.algebra.root_matrix import RootMatrix, coefficients_low_first, taylor_at_root
+from closedform.algebra.root_matrix import (
+    RootMatrix,
+    coefficients_low_first,
+    series_inverse,
+    taylor_at_root,
+)
 from closedform.algebra.spectrum import Factor, Spectrum
 from closedform.algebra.surds import SurdSum
 
@@ -73,21 +79,32 @@ class ExponentialMatrix:
     def exact_entry(self, row: int, column: int, t: SurdSum) -> SurdSum | None:
         """Return an entry at t as a surd sum, or None if it is transcendental.
 
-        At an algebraic t other than 0 an exponential polynomial is transcendental unless
-        only the eigenvalue 0 contributes (the theorem of Lindemann and Weierstrass; A. Baker,
-        Transcendental Number Theory, 1975, chapter 1).
+        At one algebraic t other than 0 an exponential polynomial is a sum of e^(lambda t)
+        with algebraic coefficients.  It is transcendental unless those of all lambda other
+        than 0 vanish there (the theorem of Lindemann and Weierstrass; A. Baker,
+        Transcendental Number Theory, 1975, chapter 1).  They may do so at this t alone, as
+        in (t - 1) e^(-t).  Those of the roots of p are a polynomial in lambda of a degree
+        below that of p, and vanish at all its roots only if it is zero.
         """
         if t.is_zero:
             return self.field.surds(self.at_zero()[row, column].element)
         total = SurdSum(())
         for term in self.terms:
             entries = [residue.entry(row, column) for residue in term.residues]
-            if term.factor.degree == 1 and not term.factor.roots.centre:
-                for power, entry in enumerate(entries):
-                    weight = SurdSum.rational(Fraction(1, factorial(power)))
-                    total += self.field.surds(entry.nth(0)) * t.power(power) * weight
-            elif any(not entry.is_zero for entry in entries):
+            held = [self._at(entries, k, t) for k in range(term.factor.degree)]
+            if all(c.is_zero for c in held):
+                continue
+            if term.factor.degree > 1 or term.factor.roots.centre:
                 return None
+            total += held[0]
+        return total
+
+    def _at(self, entries: Sequence[Polynomial], power: int, t: SurdSum) -> SurdSum:
+        """The coefficient of lambda^power in the sum of R_j t^j/j!."""
+        total = SurdSum(())
+        for j, entry in enumerate(entries):
+            weight = t.power(j) * SurdSum.rational(Fraction(1, factorial(j)))
+            total += self.field.surds(entry.nth(power)) * weight
         return total
 
     def enclosure(self, t: arb) -> arb_mat:
@@ -181,15 +198,8 @@ def _residue_weights(field: BaseField, factor: Factor, mu: Polynomial) -> list[P
     if nu == 1:
         return [mu.quo(p).rem(p).invert(p)]
     g = taylor_at_root(mu, p, 2 * nu)[nu:]
-    inverse = g[0].invert(p)
-    series = [inverse]
-    for k in range(1, nu):
-        total = field.polynomial([field.domain.zero])
-        for i in range(1, k + 1):
-            total = total + g[i] * series[k - i]
-        series.append((-(total.rem(p)) * inverse).rem(p))
     derivative = p.diff()
-    return [(derivative * u).rem(p) for u in series]
+    return [(derivative * u).rem(p) for u in series_inverse(g, p)]
 
 
 def _trace_weights(factor: Factor, t: arb, power: int) -> list[arb]:

@@ -9,10 +9,18 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import reduce
+from operator import add
 
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
 
-__all__ = ["RootMatrix", "coefficients_low_first", "taylor_at_root"]
+__all__ = [
+    "RootMatrix",
+    "coefficients_low_first",
+    "series_inverse",
+    "series_product",
+    "taylor_at_root",
+]
 
 
 def coefficients_low_first(polynomial: Polynomial, length: int) -> list[Scalar]:
@@ -139,3 +147,30 @@ def taylor_at_root(polynomial: Polynomial, modulus: Polynomial, length: int) -> 
         result.append(derivative.rem(modulus))
         derivative = derivative.diff().quo_ground(polynomial.dom.convert(k + 1))
     return result
+
+
+def series_product(
+    left: Sequence[Polynomial], right: Sequence[Polynomial], modulus: Polynomial
+) -> list[Polynomial]:
+    """Return the product of two power series over L, both cut off at the length of `left`."""
+    return [
+        _total([left[i] * right[k - i] for i in range(k + 1)]).rem(modulus)
+        for k in range(len(left))
+    ]
+
+
+def series_inverse(series: Sequence[Polynomial], modulus: Polynomial) -> list[Polynomial]:
+    """Return the inverse of a power series over L, cut off at its length.
+
+    The first coefficient is not zero in L.
+    """
+    first = series[0].invert(modulus)
+    inverse = [first]
+    for k in range(1, len(series)):
+        total = _total([series[i] * inverse[k - i] for i in range(1, k + 1)])
+        inverse.append((-(total.rem(modulus)) * first).rem(modulus))
+    return inverse
+
+
+def _total(summands: Sequence[Polynomial]) -> Polynomial:
+    return reduce(add, summands)

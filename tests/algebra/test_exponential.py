@@ -16,6 +16,7 @@ from closedform.algebra.exponential import ExponentialMatrix, exponential_by_res
 from closedform.algebra.field import BaseField
 from closedform.algebra.spectrum import spectrum_of
 from closedform.algebra.surds import SurdSum
+from closedform.response.sampling import sampled
 from tests.known_systems import KnownSystem
 from tests.response.systems import KINDS, response_to
 from tests.strategies import known_systems
@@ -123,6 +124,26 @@ def test_an_entry_with_an_exponential_in_it_has_no_exact_value_and_one_without_h
     assert function.exact_entry(0, 0, t) == SurdSum.rational(1)
     assert function.exact_entry(2, 0, t) == SurdSum.rational(Fraction(5, 2))
     assert function.exact_entry(1, 0, t) == SurdSum(())
+
+
+def test_exponentials_that_drop_out_at_one_instant_leave_an_exact_entry() -> None:
+    """(t - 1) e^(-t) + c, c = 1.2345665, is c at t = 1 and transcendental elsewhere."""
+    c = SurdSum.rational(Fraction("1.2345665"))
+    function = exponential([[-1, 1, 0], [0, -1, 0], [0, 0, 0]])
+    start = Q.matrix([[Q.scalar(x)] for x in (-1, 1, Fraction("1.2345665"))])
+    output = function.times(start).after(Q.matrix([[Q.scalar(x) for x in (1, 0, 1)]]))
+    assert output.exact_entry(0, 0, SurdSum.rational(1)) == c
+    assert output.exact_entry(0, 0, SurdSum.rational(2)) is None
+    assert sampled(output, (SurdSum.rational(1),), 6) == [["1.23457"]]
+
+
+def test_exponentials_of_a_pair_drop_out_at_one_instant_too() -> None:
+    """A double pair ± i: (t - 2) cos t is 0 at t = 2, exactly."""
+    function = exponential([[0, 1, 1, 0], [-1, 0, 0, 1], [0, 0, 0, 1], [0, 0, -1, 0]])
+    start = Q.matrix([[Q.scalar(x)] for x in (-2, 0, 1, 0)])
+    output = function.times(start)
+    assert output.exact_entry(0, 0, SurdSum.rational(2)) == SurdSum(())
+    assert output.exact_entry(0, 0, SurdSum.rational(1)) is None
 
 
 @given(known_systems(largest=4), st.fractions(-2, 2, max_denominator=5))
