@@ -13,12 +13,10 @@ from fractions import Fraction
 from math import factorial
 from typing import Literal
 
-from flint import ctx
-
 from closedform.algebra.exponential import ModalTerm
 from closedform.algebra.field import Polynomial
 from closedform.algebra.parts import vanishing_parts
-from closedform.algebra.roots import enclosed_roots, rounded
+from closedform.algebra.roots import enclosed_roots, roots_by_real_part
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
 from closedform.notation.expression import Name, operations
@@ -28,8 +26,6 @@ from closedform.response.names import NameBook, Radical, ResiduePart, RootPart
 __all__ = ["Amount", "Contribution", "Mode", "contributions", "modes_of"]
 
 Kind = Literal["real", "circular", "hyperbolic"]
-
-_SORTING_BITS = 192
 
 
 @dataclass(frozen=True)
@@ -127,37 +123,19 @@ def _quadratic_mode(factor: Factor, centre: SurdSum, book: NameBook, *, name_sur
 
 
 def _even_modes(factor: Factor, centre: SurdSum, book: NameBook) -> tuple[Mode, ...]:
-    roots, field = factor.roots, factor.roots.field
     modes: list[Mode] = []
-    with ctx.workprec(_SORTING_BITS):
-        squares = roots.square_enclosures()
-        order = [rounded(z.imag) for z in roots.enclosures()]
-        reals = [rounded(z.real) for z in roots.enclosures()]
-        places = []
-        for mu in squares:
-            size = abs(mu).sqrt()
-            if mu < 0:
-                places.append(order.index(rounded(size)) + 1)
-            else:
-                places.append(reals.index(rounded(field.enclose(roots.centre) + size)) + 1)
-        negative = [bool(mu < 0) for mu in squares]
-    for circular, which in zip(negative, places, strict=True):
+    for circular, which in factor.roots.square_places():
         kind: Kind = "circular" if circular else "hyperbolic"
-        stem = "omega" if circular else "kappa"
         mode = Mode(factor, kind, centre, None, which)
-        if _has_surd_squares(factor):
-            mu_value = surd_square(mode)
-            definition: Radical | RootPart = Radical(
-                radical_formula(-mu_value if circular else mu_value)
-            )
+        square = surd_square(mode)
+        definition: Radical | RootPart
+        if square is None:
+            definition = RootPart(factor.roots.field, factor.p, which, "imaginary")
         else:
-            definition = RootPart(field, factor.p, which, "imaginary")
-        modes.append(Mode(factor, kind, centre, book.name_of(stem, definition), which))
+            definition = Radical(radical_formula(-square if circular else square))
+        name = book.name_of("omega" if circular else "kappa", definition)
+        modes.append(Mode(factor, kind, centre, name, which))
     return tuple(modes)
-
-
-def _has_surd_squares(factor: Factor) -> bool:
-    return factor.degree == 4 and not factor.roots.field.radicands
 
 
 def _squares(factor: Factor) -> Polynomial:
@@ -166,38 +144,40 @@ def _squares(factor: Factor) -> Polynomial:
     return factor.roots.squares
 
 
-def surd_square(mode: Mode) -> SurdSum:
-    """Return mu = b ± sqrt(E) for a mode a ± sqrt(mu) of an even quartic over Q."""
-    field = mode.factor.roots.field
-    _, b, c = (field.surds(x) for x in _squares(mode.factor).to_list())
+def surd_square(mode: Mode) -> SurdSum | None:
+    """Return mu = b ± sqrt(E) for a mode a ± sqrt(mu) of an even quartic over Q.
+
+    None where sqrt(E) is no surd that is known; then all modes of the factor are circular.
+    """
+    half_gap = mode.factor.roots.half_gap
+    if half_gap is None:
+        return None
+    _, b, c = (mode.factor.roots.field.surds(x) for x in _squares(mode.factor).to_list())
     mean = b * SurdSum.rational(Fraction(-1, 2))
-    half_gap = (mean * mean - c).sqrt()
-    with ctx.workprec(_SORTING_BITS):
-        root = mode.factor.roots.enclosures()[mode.which - 1]
-        offset = root - field.enclose(mode.factor.roots.centre)
-        upper = (offset * offset).real > field.enclose(field.scalar(mean))
+    # The two mu have the product c.  Two circular modes stand at the places 3 and 4, slower
+    # first, two hyperbolic ones too; of one each the hyperbolic one has the greater mu.
+    same_sign = c.as_fraction() > 0
+    slower = mode.which == mode.factor.degree - 1
+    upper = slower if same_sign and mode.kind == "circular" else not slower
     return mean + half_gap if upper else mean - half_gap
 
 
 def _named_modes(factor: Factor, book: NameBook, number: int) -> tuple[Mode, ...]:
     field, p = factor.roots.field, factor.p
-    with ctx.workprec(_SORTING_BITS):
-        found = [
-            (-rounded(z.real), rounded(z.imag), which, z.imag == 0)
-            for which, z in enumerate(enclosed_roots(field, p), start=1)
-            if not z.imag < 0
-        ]
+    balls = enclosed_roots(field, p)
     modes = []
-    for _, _, which, real in sorted(found):
-        if real:
-            name = book.name_of("lambda", RootPart(field, p, which, "real"), number=number)
-            modes.append(Mode(factor, "real", name, None, which))
-            number += 1
-        else:
-            rate = _rate(factor, which, book)
-            frequency = book.name_of("omega", RootPart(field, p, which, "imaginary"))
-            modes.append(Mode(factor, "circular", rate, frequency, which))
-            number += 2
+    for group in reversed(roots_by_real_part(field, p)):
+        for which in group:
+            root = balls[which - 1]
+            if root.imag == 0:
+                name = book.name_of("lambda", RootPart(field, p, which, "real"), number=number)
+                modes.append(Mode(factor, "real", name, None, which))
+                number += 1
+            elif root.imag > 0:
+                rate = _rate(factor, which, book)
+                frequency = book.name_of("omega", RootPart(field, p, which, "imaginary"))
+                modes.append(Mode(factor, "circular", rate, frequency, which))
+                number += 2
     return tuple(modes)
 
 
@@ -227,8 +207,9 @@ def _amounts(
         square = field.surds(roots.discriminant)
         square = -square if mode.kind == "circular" else square
         return Amount(field.surds(even) * scale), _over(odd, mode, square)
-    if roots.form == "even" and _has_surd_squares(mode.factor):
-        return _even_amounts(mode, entry, scale)
+    mu = surd_square(mode)
+    if mu is not None:
+        return _even_amounts(mode, mu, entry, scale)
     return _named_amounts(mode, entry, weight, book)
 
 
@@ -245,12 +226,13 @@ def _over(value: SurdSum, mode: Mode, square: SurdSum) -> Amount:
     return Amount(value, over=mode.frequency)
 
 
-def _even_amounts(mode: Mode, entry: Polynomial, scale: SurdSum) -> tuple[Amount, Amount]:
+def _even_amounts(
+    mode: Mode, mu: SurdSum, entry: Polynomial, scale: SurdSum
+) -> tuple[Amount, Amount]:
     """With x = lambda - a and mu = x^2: R = R_e(mu) + x R_o(mu), and p' = 2 x q'(mu)."""
     roots, field = mode.factor.roots, mode.factor.roots.field
     moved = entry.shift(roots.centre)
     r = [field.surds(moved.nth(k)) for k in range(4)]
-    mu = surd_square(mode)
     slope = (mu + mu + field.surds(_squares(mode.factor).nth(1))).inverse() * scale
     even = (r[1] + r[3] * mu) * slope
     odd = (r[0] + r[2] * mu) * slope

@@ -9,8 +9,8 @@ from typing import Literal
 
 from flint import arb, ctx, fmpq
 
-from closedform.algebra.enclosure import value_at
 from closedform.algebra.field import BaseField, Polynomial
+from closedform.algebra.parts import imaginary_part_is, residue_value, vanishing_parts
 from closedform.algebra.roots import enclosed_roots
 from closedform.notation.evaluation import enclose
 from closedform.notation.expression import Expression
@@ -46,6 +46,18 @@ class RootPart:
         root = enclosed_roots(self.base, self.polynomial)[self.which - 1]
         return root.real if self.part == "real" else root.imag
 
+    def equals(self, value: Fraction) -> bool:
+        """Return whether the number is a given rational one, decided exactly.
+
+        As p'(lambda) lambda/p'(lambda) is lambda, it is decided as for a residue.
+        """
+        lam = self.base.polynomial([self.base.domain.one, self.base.domain.zero])
+        numerator = (lam * self.polynomial.diff()).rem(self.polynomial)
+        residue = ResiduePart(
+            self.base, self.polynomial, self.which, numerator, Fraction(1), self.part
+        )
+        return residue.equals(value)
+
 
 @dataclass(frozen=True)
 class ResiduePart:
@@ -60,17 +72,22 @@ class ResiduePart:
 
     def enclosure(self) -> arb:
         """Return a ball for the number at FLINT's current precision."""
-        root = enclosed_roots(self.base, self.polynomial)[self.which - 1]
-        above = value_at([self.base.enclose(c) for c in self.numerator.to_list()], root)
-        below = value_at([self.base.enclose(c) for c in self.polynomial.diff().to_list()], root)
-        value = above / below
+        value = residue_value(self.base, self.polynomial, self.which, self.numerator)
         weight = arb(fmpq(self.weight.numerator, self.weight.denominator))
         return weight * (value.real if self.part == "real" else value.imag)
+
+    def equals(self, value: Fraction) -> bool:
+        """Return whether the number is a given rational one, decided exactly."""
+        part = value / self.weight
+        if self.part == "imaginary":
+            return imaginary_part_is(self.base, self.polynomial, self.which, self.numerator, part)
+        slope = self.polynomial.diff().mul_ground(self.base.scalar(part))
+        return vanishing_parts(self.base, self.polynomial, self.which, self.numerator - slope)[0]
 
 
 @dataclass(frozen=True)
 class Radical:
-    """A number written with nested square roots."""
+    """An irrational number written with square roots, nested or not."""
 
     formula: Expression
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import pickle
 from decimal import ROUND_HALF_EVEN, Context, Decimal
 from fractions import Fraction
 
@@ -12,14 +13,18 @@ from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
 from closedform.algebra.enclosure import (
+    UnsettledError,
     ball_of,
     certified_decimal,
     certified_decimals,
+    decimal_order,
     enclosed_to,
     exact_decimal,
+    exact_end,
     value_at,
 )
 from closedform.algebra.surds import SurdSum
+from closedform.errors import InputError
 
 
 def rounded_by_mpmath(text: str, digits: int) -> Decimal:
@@ -109,8 +114,75 @@ def test_a_number_says_no_more_digits_than_are_settled(number: str, expected: st
     assert len(Decimal(found).as_tuple().digits) == 6
 
 
-def test_a_number_that_nothing_tells_from_zero_is_given_as_zero() -> None:
-    assert certified_decimal(lambda: arb(2).sqrt() ** 2 - 2, 6) == "0"
+def test_a_number_that_nothing_tells_from_zero_is_refused() -> None:
+    with pytest.raises(UnsettledError, match="65536 bits") as caught:
+        certified_decimal(lambda: arb(2).sqrt() ** 2 - 2, 6)
+    assert isinstance(caught.value, InputError)
+    again = pickle.loads(pickle.dumps(caught.value))  # noqa: S301
+    assert (again.what, again.bits) == ("a number to 6 digits", 65536)
+    with pytest.raises(UnsettledError):
+        certified_decimals(lambda: [arb(3).exp(), arb(2).sqrt() ** 2 - 2], 6)
+
+
+@pytest.mark.parametrize(
+    ("value", "digits", "text"),
+    [("0", 6, "0"), ("1.234565", 6, "1.23456"), ("-1.234575", 6, "-1.23458"), ("9.5", 1, "1e1")],
+)
+def test_a_tie_or_zero_is_rounded_where_it_is_known_to_be_one(
+    value: str, digits: int, text: str
+) -> None:
+    number = Fraction(value)
+
+    def ball() -> arb:
+        return ball_of(number) + arb(2).sqrt() ** 2 - 2
+
+    assert certified_decimal(ball, digits, equals=lambda tie: tie == number) == text
+    with pytest.raises(UnsettledError):
+        certified_decimal(ball, digits, equals=lambda tie: tie != number)
+
+
+@pytest.mark.parametrize(
+    ("exponent", "text"),
+    [
+        (-(10**10), "7.71095e-4342944820"),
+        (-(10**20), "7.71095e-43429448190325182766"),
+        (10**20, "1.29686e43429448190325182765"),
+    ],
+)
+def test_exponents_beyond_those_of_the_decimal_module(exponent: int, text: str) -> None:
+    """e^(10^20), by its logarithm in mpmath."""
+    mp = mpmath.mp.clone()
+    mp.dps = 80
+    log = exponent / mp.log(10)
+    order = int(mp.floor(log))
+    expected = mp.nstr(mp.mpf(10) ** (log - order), 6, strip_zeros=False)
+    found = certified_decimal(lambda: arb(exponent).exp(), 6)
+    assert found == f"{expected}e{order}"
+    assert exponent == -(10**10) or found == text
+
+
+@pytest.mark.parametrize("digits", [4000, 6000])
+def test_thousands_of_digits_can_be_asked_for(digits: int) -> None:
+    """Python itself writes integers of up to 4300 digits."""
+    mp = mpmath.mp.clone()
+    mp.dps = digits + 30
+    expected = rounded_by_mpmath(mp.nstr(mp.sqrt(2), digits + 20), digits)
+    assert Decimal(certified_decimal(lambda: arb(2).sqrt(), digits)) == expected
+    third = exact_decimal(Fraction(1, 3), digits)
+    assert third == "0." + "3" * digits
+
+
+@given(st.fractions().filter(lambda x: x > 0))
+@example(Fraction(10) ** 700)
+@example(1 / Fraction(10) ** 700)
+def test_the_order_of_a_fraction(x: Fraction) -> None:
+    found = decimal_order(x)
+    assert Fraction(10) ** found <= x < Fraction(10) ** (found + 1)
+
+
+@pytest.mark.parametrize("x", [Fraction(0), Fraction(-3, 8), Fraction(2) ** 300])
+def test_an_exact_ball_is_a_fraction(x: Fraction) -> None:
+    assert exact_end(ball_of(x)) == x
 
 
 def test_several_numbers_are_settled_together() -> None:

@@ -12,7 +12,7 @@ from hypothesis import strategies as st
 
 from closedform.algebra.enclosure import value_at
 from closedform.algebra.field import BaseField
-from closedform.algebra.parts import vanishing_parts
+from closedform.algebra.parts import imaginary_part_is, vanishing_parts
 from closedform.algebra.roots import enclosed_roots
 from closedform.algebra.surds import SurdSum
 from tests.strategies import IRREDUCIBLE, irreducibles
@@ -56,11 +56,39 @@ def test_parts_over_surds() -> None:
     assert vanishing_parts(Q2, p, 4, over(Q2, 1, 0)) == (True, False)
 
 
-def test_a_part_that_is_tiny_is_not_zero() -> None:
-    """p'/p' = 1, and 10^-45 lambda more: below the first look's threshold, but not real."""
-    p = over(Q, 1, 0, -1, -1)
-    numerator = p.diff() + over(Q, Fraction(1, 10**45), 0)
-    assert vanishing_parts(Q, p, 1, numerator) == (False, False)
+@pytest.mark.parametrize("digits", [45, 200, 2000])
+@pytest.mark.parametrize("p", [(1, 0, -1, -1), (1, 0, 0, -1, -1)])
+def test_a_part_that_is_tiny_is_not_zero(p: tuple[int, ...], digits: int) -> None:
+    """p'/p' = 1, and a little lambda more: real only where lambda is."""
+    polynomial = over(Q, *p)
+    numerator = polynomial.diff() + over(Q, Fraction(1, 10**digits), 0)
+    for which, root in enumerate(enclosed_roots(Q, polynomial), start=1):
+        expected = (False, root.imag == 0)
+        assert vanishing_parts(Q, polynomial, which, numerator) == expected
+
+
+# The roots ± sqrt(2) ± h i have a polynomial that is even; at h = 1 it is s^4 - 2 s^2 + 9.
+@pytest.mark.parametrize("h", [Fraction(1), Fraction("1.234565"), Fraction(1, 10**30)])
+def test_rational_imaginary_parts_are_told_from_near_ones(h: Fraction) -> None:
+    p = over(Q, 1, 0, 2 * h * h - 4, 0, (2 + h * h) ** 2)
+    times_root = (over(Q, 1, 0) * p.diff()).rem(p)
+    with ctx.workprec(300):
+        signs = [1 if z.imag > 0 else -1 for z in enclosed_roots(Q, p)]
+    assert sorted(signs) == [-1, -1, 1, 1]
+    for which, sign in enumerate(signs, start=1):
+        assert imaginary_part_is(Q, p, which, times_root, sign * h)
+        assert not imaginary_part_is(Q, p, which, times_root, -sign * h)
+        assert not imaginary_part_is(Q, p, which, times_root, sign * h + Fraction(1, 10**200))
+        assert not imaginary_part_is(Q, p, which, times_root, Fraction(0))
+
+
+def test_rational_imaginary_parts_over_surds() -> None:
+    """s^2 + 2 sqrt(2) s + 3 has the roots -sqrt(2) ± i; at them z = s p'/p'."""
+    p = over(Q2, 1, SurdSum.of({2: Fraction(2)}), 3)
+    times_root = (over(Q2, 1, 0) * p.diff()).rem(p)
+    assert imaginary_part_is(Q2, p, 2, times_root, Fraction(1))
+    assert not imaginary_part_is(Q2, p, 1, times_root, Fraction(1))
+    assert not imaginary_part_is(Q2, p, 2, times_root, Fraction(2))
 
 
 @given(st.integers(3, 5).flatmap(irreducibles), st.data())

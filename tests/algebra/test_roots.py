@@ -12,8 +12,14 @@ from flint import acb, arb, ctx
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from closedform.algebra.enclosure import ball_of
 from closedform.algebra.field import BaseField
-from closedform.algebra.roots import arrangement, enclosed_roots, root_set, rounded
+from closedform.algebra.roots import (
+    arrangement,
+    enclosed_roots,
+    root_set,
+    roots_by_real_part,
+)
 from closedform.algebra.surds import SurdSum
 from tests.strategies import IRREDUCIBLE, irreducibles, shifted
 
@@ -72,7 +78,7 @@ def test_only_a_quadratic_has_a_discriminant_and_only_even_ones_have_squares() -
     with pytest.raises(ValueError, match="'even'"):
         root_set(Q, over(Q, 1, 0, 4, 0, 2)).discriminant  # noqa: B018
     with pytest.raises(ValueError, match="'named'"):
-        root_set(Q, over(Q, 1, 0, -1, -1)).square_enclosures()
+        root_set(Q, over(Q, 1, 0, -1, -1)).square_places()
 
 
 UNDAMPED = (1, 0, 15, 0, 62, 0, 76)  # three pairs with equal real parts
@@ -206,8 +212,108 @@ def test_the_slowest_factor_comes_first_then_the_lowest_frequency() -> None:
     assert sorted([fast, quick, turning, slow, growing], key=arrangement) == expected
 
 
-@given(st.fractions(-5, 5), st.integers(1, 40))
-def test_rounding_gives_the_nearest_multiple(x: Fraction, resolution: int) -> None:
-    with ctx.workprec(300):
-        found = rounded(arb(x.numerator) / x.denominator, resolution)
-    assert abs(Fraction(found, 2**resolution) - x) <= Fraction(1, 2**resolution)
+def test_rates_far_below_one_are_told_apart_in_the_order_of_factors() -> None:
+    """Rates of 1e-40 and 2e-40, and a pair with Re = -1/2 beside the real root -1/2."""
+    tiny = [root_set(Q, over(Q, 1, Fraction(k, 10**40))) for k in (1, 2, 3)]
+    assert sorted([tiny[2], tiny[0], tiny[1]], key=arrangement) == tiny
+    pair, real = root_set(Q, over(Q, 1, 1, 2)), root_set(Q, over(Q, 2, 1).monic())
+    assert sorted([pair, real], key=arrangement) == [real, pair]
+
+
+def near_pairs(digits: int) -> tuple[Fraction | int, ...]:
+    """(s^2 + 2e s + 1)(s^2 + 4e s + 4) + e^2/7 with e = 10^-digits: real parts -e and -2e."""
+    e = Fraction(1, 10**digits)
+    return (1, 6 * e, 5 + 8 * e * e, 12 * e, 4 + e * e / 7)
+
+
+@pytest.mark.parametrize("digits", [3, 31, 60, 120, 300])
+def test_real_parts_are_ordered_however_small_their_difference(digits: int) -> None:
+    polynomial = over(Q, *near_pairs(digits))
+    for bits in (64, 3000):
+        with ctx.workprec(bits):
+            found = enclosed_roots(Q, polynomial)
+        with ctx.workprec(3000):
+            assert [round(float(z.imag.mid())) for z in found] == [-2, 2, -1, 1]
+    assert roots_by_real_part(Q, polynomial) == ((1, 2), (3, 4))
+
+
+def test_real_parts_that_nothing_tells_apart_count_as_equal() -> None:
+    """(s^2 + 2 s + 3)(s^2 + 2 s + 7)(s^3 - 2): Re = -1 twice, and no axis in all."""
+    polynomial = over(Q, 1, 2, 3) * over(Q, 1, 2, 7) * over(Q, 1, 0, 0, -2)
+    assert roots_by_real_part(Q, polynomial) == ((1, 2, 3, 4), (5, 6), (7,))
+    for bits in (64, 1000, 4000):
+        with ctx.workprec(bits):
+            found = enclosed_roots(Q, polynomial)[:4]
+            assert all(a.imag < b.imag for a, b in itertools.pairwise(found))
+
+
+@pytest.mark.parametrize("power", [-90, -40, 20, 60, 160])
+@pytest.mark.parametrize("shift", [Fraction(0), Fraction(1, 3)])
+def test_roots_on_an_axis_share_their_real_part_at_every_size(power: int, shift: Fraction) -> None:
+    """Three undamped pairs, sizes far from 1: real parts are exactly those of the axis."""
+    w = Fraction(10) ** (2 * power)
+    polynomial = over(Q, *shifted((1, 0, 6 * w, 0, 9 * w * w, 0, 3 * w**3), shift))
+    assert roots_by_real_part(Q, polynomial) == ((1, 2, 3, 4, 5, 6),)
+    for bits in PRECISIONS:
+        with ctx.workprec(bits):
+            found = enclosed_roots(Q, polynomial)
+            assert all(z.real.overlaps(ball_of(shift)) for z in found)
+            assert len({z.real.mid().man_exp() for z in found}) == 1
+            assert all(a.imag < b.imag for a, b in itertools.pairwise(found))
+
+
+@pytest.mark.parametrize("power", [-90, -20, 0, 60, 300])
+def test_roots_over_surds_are_found_at_every_size(power: int) -> None:
+    """Of s^3 + sqrt(3) s^2 + s + sqrt(2), scaled, each to 60 bits of its own modulus."""
+    w = Fraction(10) ** power
+    r3 = SurdSum.of({3: w})
+    field = BaseField((2, 3))
+    found = enclosed_roots(field, over(field, 1, r3, w * w, root2(w**3)))
+    assert [z.imag == 0 for z in found].count(True) == 1
+    for z in found:
+        assert z.rel_accuracy_bits() >= 60
+        scaled = z / ball_of(w)
+        value = ((scaled + arb(3).sqrt()) * scaled + 1) * scaled + arb(2).sqrt()
+        assert value.contains(0)
+
+
+def test_zero_is_a_root_exactly() -> None:
+    assert enclosed_roots(Q2, over(Q2, 1, 0)) == (acb(0),)
+    found = enclosed_roots(Q2, over(Q2, 1, 0, root2(-1), 0))
+    assert [bool(z == 0) for z in found] == [False, True, False]
+
+
+@pytest.mark.parametrize(
+    ("p", "places"),
+    [
+        ((1, 0, 4, 0, 2), ((True, 3), (True, 4))),
+        ((1, 0, 6, 0, 9, 0, 3), ((True, 4), (True, 5), (True, 6))),
+        ((1, 0, -10, 0, 1), ((False, 3), (False, 4))),
+        ((1, 0, -2, 0, -1), ((True, 3), (False, 4))),  # 1 - sqrt(2), 1 + sqrt(2)
+        ((1, 0, 2, 0, -1), ((False, 4), (True, 3))),
+        ((1, 0, 0, 0, -2), ((True, 3), (False, 4))),  # ± sqrt(2): the same modulus
+    ],
+    ids=str,
+)
+def test_places_of_roots_of_squares(
+    p: tuple[int, ...], places: tuple[tuple[bool, int], ...]
+) -> None:
+    found = root_set(Q, over(Q, *p))
+    assert found.square_places() == places
+    for negative, which in places:
+        z = found.enclosures()[which - 1]
+        assert bool(z.real == 0 and z.imag > 0) if negative else bool(z.imag == 0 and z.real > 0)
+    sizes = [abs(found.enclosures()[which - 1]) for _, which in places]
+    assert all(a < b or a.overlaps(b) for a, b in itertools.pairwise(sizes))
+
+
+def test_squares_that_are_no_known_surds_need_names() -> None:
+    """mu = -b ± sqrt(E) with E too large to be factored."""
+    unknown = (10**30 + 57) * (10**31 + 33)
+    b = 10**31
+    assert b * b > unknown
+    circular = root_set(Q, over(Q, 1, 0, 2 * b, 0, b * b - unknown))
+    assert (circular.form, circular.half_gap) == ("even", None)
+    assert circular.square_places() == ((True, 3), (True, 4))
+    assert root_set(Q, over(Q, 1, 0, -2 * b, 0, b * b - unknown)).form == "named"
+    assert root_set(Q, over(Q, 1, 0, 4, 0, 2)).half_gap == root2()

@@ -11,6 +11,7 @@ from flint import acb, arb, ctx
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+import closedform
 from closedform.algebra.enclosure import ball_of
 from closedform.algebra.field import BaseField
 from closedform.algebra.roots import root_set
@@ -18,6 +19,7 @@ from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
 from closedform.response.modes import Mode, modes_of
 from closedform.response.names import NameBook, constant_values
+from tests.exact import value_of
 from tests.strategies import irreducibles, shifted
 
 Q = BaseField()
@@ -142,3 +144,57 @@ def test_modes_come_slowest_first_then_by_frequency(p: tuple[Any, ...]) -> None:
 def test_kinds_of_modes(p: tuple[int, ...], kinds: list[str]) -> None:
     found, _ = modes(*p)
     assert [mode.kind for mode in found] == kinds
+
+
+def even(power: int) -> tuple[Any, ...]:
+    """Three undamped modes with omega^2 of the size 10^power."""
+    w = Fraction(10) ** power
+    return (1, 0, 6 * w, 0, 9 * w * w, 0, 3 * w**3)
+
+
+@pytest.mark.parametrize(
+    "p",
+    [
+        even(60),
+        even(120),
+        even(-80),
+        (1, 0, 5 * Fraction(10) ** 60, 0, 5 * Fraction(10) ** 120),
+        (1, 0, 2, 0, 1 - Fraction(2, 10**120)),  # mu = -1 ± 1e-60 sqrt(2)
+        (1, 0, -2, 0, 1 - Fraction(2, 10**120)),
+        (1, 0, 2 * 10**31, 0, 10**62 - (10**30 + 57) * (10**31 + 33)),
+        (1, 0, -2 * 10**31, 0, 10**62 - (10**30 + 57) * (10**31 + 33)),
+    ],
+    ids=["huge", "larger", "tiny", "quartic", "close", "close real", "unknown", "unknown real"],
+)
+def test_modes_of_any_size_and_closeness_stand_for_each_root_once(p: tuple[Any, ...]) -> None:
+    found, book = modes(*p)
+    with ctx.workprec(1500):
+        own = found[0].factor.roots.enclosures()
+        roots = [z for mode in found for z in roots_of(mode, book)]
+        assert [sum(z.overlaps(w) for w in own) for z in roots] == [1] * len(roots)
+        assert [sum(z.overlaps(w) for z in roots) for w in own] == [1] * len(own)
+        for mode in found:
+            assert own[mode.which - 1].overlaps(roots_of(mode, book)[0])
+
+
+@pytest.mark.parametrize(
+    "rows",
+    [
+        [[0, 1], ["-39.478417604", "-0.0123456789"]],
+        [[0, 1], [-(10**30 + 57), 0]],
+        [[0, 1], [-(10**30 + 57) * (10**31 + 33), 0]],
+        [[0, 1, 0, 0], ["-123.456789", 0, "61.7283945", 0], [0, 0, 0, 1], [7, 0, "-98.7654321", 0]],
+        [["-1e-6", "1e3", 0], ["1e-6", "-1e3-1e-9", "1e2"], [0, "1e-9", "-1e2"]],
+        [[10**100 + 267, 3], [7, -(10**99) + 1]],
+        [["sqrt(1000000007)", "sqrt(1000000009)"], [0, 1]],
+    ],
+    ids=["oscillator", "prime", "unknown", "masses", "rates", "100 digits", "two roots"],
+)
+def test_models_of_many_digits_are_written_out(rows: list[list[object]]) -> None:
+    response = closedform.respond(closedform.system(rows, initial=[1] * len(rows)))
+    for t in (Fraction(1, 10**99), Fraction(1, 10**3)):
+        with ctx.workprec(1200):
+            names = {"t": ball_of(t), **constant_values(response.closed_forms.constants)}
+            known = response.state.enclosure(ball_of(t))
+            for formula, row in zip(response.solution, range(len(rows)), strict=True):
+                assert value_of(formula, names).overlaps(known[row, 0])

@@ -17,9 +17,15 @@ from closedform.algebra.enclosure import ball_of
 from closedform.algebra.field import BaseField
 from closedform.algebra.roots import enclosed_roots
 from closedform.algebra.surds import SurdSum
-from closedform.response.names import RootPart
+from closedform.response.names import NamedConstant, ResiduePart, RootPart
 from closedform.response.response import Response
-from closedform.response.sampling import default_times, isolating_interval, sampled, surd_decimal
+from closedform.response.sampling import (
+    constant_decimal,
+    default_times,
+    isolating_interval,
+    sampled,
+    surd_decimal,
+)
 from tests.algebra.test_enclosure import rounded_by_mpmath
 from tests.algebra.test_roots import changes, remainder
 from tests.response.systems import KINDS, response_to
@@ -180,6 +186,16 @@ def test_decimals_of_surds(value: SurdSum, digits: int, text: str) -> None:
         ([[0, 1], [-1, 0]], Fraction(1, 2)),  # an eighth of 2 pi is 0.785
         ([[-1, 0], [0, -100]], Fraction(1, 2)),  # the longest time constant
         ([[0, 1, 0], [-10000, 0, 0], [0, 0, -1]], Fraction(5, 1000)),
+        ([[-1, 0], [0, 50]], Fraction(2, 100)),  # e^30 at 30/50, a sixteenth of it a step
+        ([["-1e400", 1], [0, "-1e600"]], Fraction(5, 10**401)),
+        ([["-1e-400"]], 5 * 10**399),
+        ([["-5e-18", 0], ["5e-18", "-8e-14"]], 10**17),
+        ([[0, 1], ["-1e-60", 0]], 5 * 10**29),
+        # s^4 = 2 (10^10 s - 1)^2: a root of 1.4e10 beside two near 1e-10
+        (
+            [[0, 1, 0, 0], [0, 0, 1, 0], [0, 0, 0, 1], [2, -4 * 10**10, 2 * 10**20, 0]],
+            Fraction(1, 10**10),
+        ),
     ],
     ids=str,
 )
@@ -187,6 +203,45 @@ def test_default_instants_suit_the_slowest_motion(rows: list[list[object]], step
     response = closedform.respond(closedform.system(rows, initial=[1] * len(rows)))
     found = [t.as_fraction() for t in default_times(response)]
     assert found == [step * k for k in (0, 1, 2, 4, 8, 16)]
+
+
+@pytest.mark.parametrize("power", [20, 60, 100])
+def test_intervals_part_roots_that_are_closer_than_any_fixed_precision(power: int) -> None:
+    """s^4 - 2 (a s - 1)^2 has two real roots near 1/a, about a^-3 apart."""
+    a = 10**power
+    p = tuple(map(Fraction, (1, 0, -2 * a * a, 4 * a, -2)))
+    polynomial = Q.polynomial([Q.scalar(c) for c in p])
+    found = [interval(RootPart(Q, polynomial, which, "real")) for which in (1, 2, 3, 4)]
+    assert [sturm_count(p, low, high) for low, high in found] == [1, 1, 1, 1]
+
+
+def test_constants_on_a_tie_are_rounded_to_even() -> None:
+    """The imaginary part of sqrt(2) + 1.234565 i, and 1.234565 p'/p'."""
+    h = Fraction("1.234565")
+    p = Q.polynomial([Q.scalar(c) for c in (1, 0, 2 * h * h - 4, 0, (2 + h * h) ** 2)])
+    part = NamedConstant("omega", RootPart(Q, p, 4, "imaginary"))
+    assert [constant_decimal(part, digits) for digits in (6, 7)] == ["1.23456", "1.234565"]
+    slope = p.diff().mul_ground(Q.scalar(h))
+    residue = ResiduePart(Q, p, 4, slope, Fraction(-2), "real")
+    assert constant_decimal(NamedConstant("C", residue), 6) == "-2.46913"
+    assert residue.equals(-2 * h)
+    residue = ResiduePart(Q, p, 4, slope, Fraction(1, 2), "real")
+    assert residue.equals(h / 2)
+    assert not residue.equals(h / 2 + Fraction(1, 10**99))
+    assert constant_decimal(NamedConstant("C", residue), 6) == "0.617282"
+
+
+def test_instants_far_out_are_sampled() -> None:
+    response = closedform.respond(closedform.system([[-1, 1], [0, -2]], initial=[1, 1]))
+    late = SurdSum.rational(10**300)
+    mp = mpmath.mp.clone()
+    mp.dps = 330
+    log = [(mp.log(2) - mp.mpf(10) ** 300) / mp.log(10), -2 * mp.mpf(10) ** 300 / mp.log(10)]
+    expected = []
+    for x in log:
+        order = int(mp.floor(x))
+        expected.append(f"{mp.nstr(mp.mpf(10) ** (x - order), 6, strip_zeros=False)}e{order}")
+    assert sampled(response.state, (late,), 6) == [expected]
 
 
 @given(st.fractions(Fraction(1, 10**6), 10**6), st.sampled_from(("decay", "turn")))
