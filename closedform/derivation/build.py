@@ -6,8 +6,8 @@ from collections.abc import Iterator
 
 from closedform.derivation.abbreviations import abbreviations_step
 from closedform.derivation.canonical_steps import canonical_steps
-from closedform.derivation.proof import prove_statements
 from closedform.derivation.proof.evaluation import names_in
+from closedform.derivation.proof.statements import prove_statements
 from closedform.derivation.resolvent_steps import resolvent_steps
 from closedform.derivation.result_steps import (
     cautions_step,

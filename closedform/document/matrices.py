@@ -5,7 +5,7 @@ from __future__ import annotations
 from fractions import Fraction
 from math import lcm
 
-from closedform.derivation.proof import require_equal
+from closedform.derivation.proof.rewriting import require_equal
 from closedform.derivation.step import Matrix
 from closedform.notation.expression import (
     Call,

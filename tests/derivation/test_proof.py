@@ -27,8 +27,8 @@ from closedform.derivation import (
     spectrum_steps,
 )
 from closedform.derivation.build import derive
-from closedform.derivation.proof import StatementRefutedError, prove_statements
-from closedform.derivation.proof.finding import Comparison, decimal_of
+from closedform.derivation.proof.finding import Comparison, StatementRefutedError, decimal_of
+from closedform.derivation.proof.statements import prove_statements
 from closedform.derivation.step import Matrix, Step, Symbol
 from closedform.errors import RefutedError
 from closedform.notation.expression import Name, Negation, number

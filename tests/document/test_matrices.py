@@ -2,7 +2,8 @@ from __future__ import annotations
 
 import pytest
 
-from closedform.derivation.proof import StatementRefutedError, require_equal
+from closedform.derivation.proof.finding import StatementRefutedError
+from closedform.derivation.proof.rewriting import require_equal
 from closedform.derivation.step import Matrix
 from closedform.document import matrices
 from closedform.document.matrices import matrix_box, matrix_height, with_front
