@@ -38,6 +38,7 @@ from tests.derivation.test_resolvent_steps import REPEATED
 from tests.derivation.test_spectrum_steps import UNDAMPED
 from tests.derivation.values import derivation_of, responded
 from tests.response.systems import KINDS, response_to
+from tests.verification.test_comparison import CLOSE
 
 # --- what is true is proved ----------------------------------------------------------------
 
@@ -68,6 +69,12 @@ def test_further_derivations_are_proved(name: str) -> None:
     last = derivation_of(responded(FURTHER[name])).checks[-1]
     assert last.outcome == "enclosed"
     assert "open" not in last.how
+
+
+@pytest.mark.parametrize("name", CLOSE)
+def test_close_eigenvalues_are_told_apart(name: str) -> None:
+    response = responded(CLOSE[name])
+    assert prove_statements(response, tuple(build._steps(response, 6)), 6).outcome == "enclosed"
 
 
 def test_a_value_beyond_reach_is_counted_as_open() -> None:

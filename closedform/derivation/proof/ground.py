@@ -111,9 +111,9 @@ class Ground:
         return {e.numbers: e for e in eigenvalues_of(self.response)}
 
     @cached_property
-    def eigenvalues(self) -> dict[int, acb]:
-        """The isolated root that goes by each number in print; a pair has + first."""
-        found: dict[int, acb] = {}
+    def _roots_met(self) -> dict[int, list[acb]]:
+        """The isolated roots that each eigenvalue may be, by its number; a pair has + first."""
+        found: dict[int, list[acb]] = {}
         for numbers, eigenvalue in self.numbered.items():
             roots = eigenvalue.factor.roots.enclosures()
             mode = eigenvalue.mode
@@ -121,10 +121,18 @@ class Ground:
             if mode.kind == "circular":
                 turn = turn * acb(0, 1)
             for number, written in zip(numbers, (rate + turn, rate - turn), strict=False):
-                met = [root for root in roots if root.overlaps(written)]
-                if len(met) == 1:
-                    found[number] = met[0]
+                found[number] = [root for root in roots if root.overlaps(written)]
         return found
+
+    @property
+    def is_coarse(self) -> bool:
+        """Whether an eigenvalue cannot be told from its neighbours at this precision."""
+        return any(len(roots) > 1 for roots in self._roots_met.values())
+
+    @cached_property
+    def eigenvalues(self) -> dict[int, acb]:
+        """The isolated root that goes by each number in print."""
+        return {number: roots[0] for number, roots in self._roots_met.items() if len(roots) == 1}
 
     def unplaced(self) -> Iterator[Finding]:
         """Yield a fault for every eigenvalue that is no isolated root, or not the only one."""
