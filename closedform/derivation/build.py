@@ -44,7 +44,7 @@ def derive(response: Response, record: VerificationRecord, *, digits: int = 6) -
         raise ValueError("only a response that was proved is derived")
     steps = tuple(_steps(response, digits))
     checks = (*record.checks, prove_statements(response, steps, digits))
-    ends = (verification_step(checks), cautions_step())
+    ends = (verification_step(checks, response.model.time), cautions_step())
     return Derivation(response.model.title, (*steps, *ends), checks)
 
 

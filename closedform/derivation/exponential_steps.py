@@ -30,6 +30,7 @@ def exponential_step(blocks: Sequence[Block], time: str, *, is_complex: bool) ->
         {
             "diagonal": all(b.size == 1 for b in blocks) and not is_complex,
             "real": is_complex,
+            "reals": any(not b.is_circular for b in blocks),
             "chained": any(b.size > 1 for b in blocks),
         },
         rests_on=("real_form" if is_complex else "jordan_form",),

@@ -10,6 +10,7 @@ from closedform.algebra.field import BaseField, Polynomial
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
 from closedform.notation.expression import Expression, Name, Number, Power, Sum, operations
+from closedform.notation.plain import plain
 from closedform.response.amounts import sum_of, surd_formula, weighted
 from closedform.response.modes import Mode
 
@@ -79,7 +80,7 @@ def frequency_formula(value: SurdSum, mode: Mode, unit: Sequence[Expression] = (
     field, roots = mode.factor.roots.field, mode.factor.roots
     square = field.surds(-roots.discriminant if mode.kind == "circular" else roots.discriminant)
     below = weighted(value * square, unit, [name])
-    return below if operations(below) < operations(above) else above
+    return min((above, below), key=lambda form: (operations(form), len(plain(form))))
 
 
 def complex_formula(real: SurdSum, turn: SurdSum, mode: Mode) -> Expression:

@@ -121,10 +121,10 @@ def _terminating(numerator: int, denominator: int) -> str:
     return f"{sign}{whole}.{part}" if part else f"{sign}{whole}"
 
 
-def verification_step(checks: Sequence[Check]) -> Step:
+def verification_step(checks: Sequence[Check], time: str) -> Step:
     """List what was proved or enclosed, and how."""
     rows = [
-        {"item": printed_item(check.item), "outcome": check.outcome, "how": check.how}
+        {"item": printed_item(check.item, time), "outcome": check.outcome, "how": check.how}
         for check in checks
     ]
     return Step("verification", (), {"rows": rows}, depth="summary")

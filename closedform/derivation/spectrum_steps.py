@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 
+from flint import arb
+
+from closedform.algebra.enclosure import ball_of, certified_decimal
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.formulas import (
@@ -179,9 +182,21 @@ def _decimal(response: Response, mode: Mode, digits: int) -> str:
 
     if mode.kind == "real" or mode.frequency is None:
         return shown(mode.rate)
-    rate = shown(mode.rate)
-    turn = shown(mode.frequency) + ("i" if mode.kind == "circular" else "")
-    return f"±{turn}" if rate == "0" else f"{rate} ± {turn}"
+    if mode.kind == "hyperbolic":
+        return " and ".join(_sum_decimal(mode, constants, sign, digits) for sign in (1, -1))
+    rate, turn = shown(mode.rate), shown(mode.frequency)
+    return f"±{turn}i" if rate == "0" else f"{rate} ± {turn}i"
+
+
+def _sum_decimal(mode: Mode, constants: Mapping[str, NamedConstant], sign: int, digits: int) -> str:
+    """One eigenvalue of a real pair: the sum is rounded, not its parts."""
+
+    def ball(value: SurdSum | str | None) -> arb:
+        if isinstance(value, str):
+            return constants[value].definition.enclosure()
+        return ball_of(value or SurdSum(()))
+
+    return certified_decimal(lambda: ball(mode.rate) + sign * ball(mode.frequency), digits)
 
 
 def _field_name(response: Response) -> str:

@@ -30,7 +30,7 @@ TALLEST_MATRIX = 56.0
 KEPT_TOGETHER = 6
 """Rows of one formula up to this number stay on one page."""
 
-AS_GIVEN = frozenset({"matrix", "initial"})
+AS_GIVEN = frozenset({"matrix", "initial", "J", "real form"})
 """Statements of what the user gave: their matrices keep their entries as they are."""
 
 MARK = "\t"

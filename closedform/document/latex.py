@@ -83,6 +83,8 @@ def decimal(text: str) -> str:
     >>> decimal("-1.25e-7")
     '$-1.25 \\times 10^{-7}$'
     """
+    if " and " in text:  # two real eigenvalues
+        return " and ".join(map(decimal, text.split(" and ")))
     if match := COMPLEX.fullmatch(text.strip()):
         real, size = (_signed(match[part]) if match[part] else "" for part in ("real", "size"))
         sign = {"+": "+", "-": "-", "\u2212": "-", "±": r"\pm"}.get(match["sign"], "")

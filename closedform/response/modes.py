@@ -19,8 +19,7 @@ from closedform.algebra.parts import vanishing_parts
 from closedform.algebra.roots import enclosed_roots, roots_by_real_part
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
-from closedform.notation.expression import Name, operations
-from closedform.response.amounts import radical_formula, square_root_of_surd, weighted
+from closedform.response.amounts import radical_formula, square_root_of_surd
 from closedform.response.names import NameBook, Radical, ResiduePart, RootPart
 
 __all__ = ["Amount", "Contribution", "Mode", "contributions", "modes_of"]
@@ -214,15 +213,16 @@ def _amounts(
 
 
 def _over(value: SurdSum, mode: Mode, square: SurdSum) -> Amount:
-    """Return value/w for the frequency w of a mode, or (value/w^2) w where that is shorter."""
+    """Return value/w for the frequency w of a mode; ± w^2/w is ± w.
+
+    Other values stay over w: so they keep the size that the model's numbers gave them.
+    """
     if value.is_zero:
         return ZERO
     if isinstance(mode.frequency, SurdSum):
         return Amount(value / mode.frequency)
-    name = [Name(str(mode.frequency))]
-    multiple = value / square
-    if operations(weighted(multiple, name, [])) <= operations(weighted(value, [], name)):
-        return Amount(multiple, times=mode.frequency)
+    if value in (square, -square):
+        return Amount(value / square, times=mode.frequency)
     return Amount(value, over=mode.frequency)
 
 

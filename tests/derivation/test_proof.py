@@ -162,6 +162,9 @@ def last_figure_changed(original: Any) -> Callable[..., Any]:
 
 
 def off_by_one(text: str) -> str:
+    if " and " in text:
+        first, second = text.split(" and ")
+        return f"{first} and {off_by_one(second)}"
     if "±" in text:
         rate, turn = text.split("±")
         mark = "i" if turn.endswith("i") else ""
@@ -251,7 +254,7 @@ FAULTS: list[tuple[Any, str, str, Fault]] = [
     (spectrum_steps, "_decimal", "hyperbolic", last_figure_changed),
     (spectrum_steps, "_decimal", "even quartic", last_figure_changed),
     (spectrum_steps, "constant_decimal", "named cubic", last_figure_changed),
-    (spectrum_steps, "surd_decimal", "hyperbolic", last_figure_changed),
+    (spectrum_steps, "certified_decimal", "hyperbolic", last_figure_changed),
     (spectrum_steps, "isolating_interval", "named cubic", shifted_interval),
     (spectrum_steps, "isolating_interval", "named quartic", wide_interval),
     (abbreviations, "constant_decimal", "named cubic", last_figure_changed),

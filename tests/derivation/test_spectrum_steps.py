@@ -127,7 +127,9 @@ def test_decimals_of_eigenvalues_are_right(kind: str, digits: int) -> None:
 
 
 def numbers_in(text: str, mp: mpmath.MPContext) -> list[mpmath.mpc]:
-    """Both numbers of "a ± bi", or the one of "a"."""
+    """Both numbers of "a ± bi" or "a and b", or the one of "a"."""
+    if " and " in text:
+        return [mp.mpc(mp.mpf(part), 0) for part in text.split(" and ")]
     if "±" not in text:
         return [mp.mpc(mp.mpf(text), 0)]
     left, right = (part.strip() for part in text.split("±"))

@@ -128,16 +128,23 @@ def decimal_of(
 
     A decimal with fewer figures is taken for one that ends in zeros; "0" for zero itself.
     """
-    value = Decimal(text)
+    mantissa, power = _read(text)
     printed = acb(number_in(text))
-    if value.is_zero():
+    if mantissa.is_zero():
         return Comparison(place, printed, expected, scale=scale)
-    last = min(int(value.as_tuple().exponent), value.adjusted() - digits + 1)
-    return Comparison(place, printed, expected, margin=arb(10) ** last / 2)
+    last = min(int(mantissa.as_tuple().exponent), mantissa.adjusted() - digits + 1)
+    return Comparison(place, printed, expected, margin=arb(10) ** (last + power) / 2)
 
 
 def number_in(text: str) -> arb:
     """Return a printed decimal as a ball."""
-    sign, figures, exponent = Decimal(text).as_tuple()
+    mantissa, power = _read(text)
+    sign, figures, exponent = mantissa.as_tuple()
     whole = arb(int("".join(map(str, figures))))
-    return (-whole if sign else whole) * arb(10) ** int(exponent)
+    return (-whole if sign else whole) * arb(10) ** (int(exponent) + power)
+
+
+def _read(text: str) -> tuple[Decimal, int]:
+    """The mantissa and the power of ten, which may be beyond what Decimal holds."""
+    mantissa, _, power = text.partition("e")
+    return Decimal(mantissa), int(power or 0)

@@ -215,11 +215,16 @@ def _decimals(
         yield from whether(roots[0].imag == 0, place, "it is not real")
         yield decimal_of(place, text, roots[0], ground.digits)
         return
+    if kind == "real pair":
+        texts = text.split(" and ")
+        yield from whether(len(texts) == 2, place, "a real pair has two decimals")
+        for part, root in zip(texts, roots, strict=False):
+            yield from whether(root.imag == 0, place, "it is not real")
+            yield decimal_of(place, part, root, ground.digits)
+        return
     rate, _, turn = text.partition("±")
-    is_pair = kind == "conjugate pair"
-    yield from whether(turn.endswith("i") == is_pair, place, "it is the other kind of pair")
-    middle, half = (roots[0] + roots[1]) / 2, (roots[0] - roots[1]) / 2
-    half = half / acb(0, 1) if is_pair else half
+    yield from whether(turn.endswith("i"), place, "it is the other kind of pair")
+    middle, half = (roots[0] + roots[1]) / 2, (roots[0] - roots[1]) / acb(0, 2)
     yield decimal_of(place, rate.strip() or "0", middle, ground.digits)
     yield decimal_of(place, turn.strip().removesuffix("i"), half, ground.digits)
 
