@@ -127,7 +127,10 @@ class Ground:
     @property
     def is_coarse(self) -> bool:
         """Whether an eigenvalue cannot be told from its neighbours at this precision."""
-        return any(len(roots) > 1 for roots in self._roots_met.values())
+        balls = list(self.eigenvalues.values())
+        return any(len(roots) > 1 for roots in self._roots_met.values()) or any(
+            z.overlaps(w) for i, z in enumerate(balls) for w in balls[:i]
+        )
 
     @cached_property
     def eigenvalues(self) -> dict[int, acb]:
