@@ -80,7 +80,11 @@ def frequency_formula(value: SurdSum, mode: Mode, unit: Sequence[Expression] = (
     field, roots = mode.factor.roots.field, mode.factor.roots
     square = field.surds(-roots.discriminant if mode.kind == "circular" else roots.discriminant)
     below = weighted(value * square, unit, [name])
-    return min((above, below), key=lambda form: (operations(form), len(plain(form))))
+    return min((above, below), key=lambda form: (operations(form), _figures(form)))
+
+
+def _figures(formula: Expression) -> int:
+    return sum(character.isdigit() for character in plain(formula))
 
 
 def complex_formula(real: SurdSum, turn: SurdSum, mode: Mode) -> Expression:
