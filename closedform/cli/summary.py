@@ -17,7 +17,7 @@ from closedform.cli.screen import Line
 from closedform.document.writeup import WriteUp
 from closedform.notation.expression import Expression, Name, Negation, Number, Quotient, Sum
 from closedform.notation.plain import plain
-from closedform.notation.surd_formula import surd_expression
+from closedform.notation.terms import surd_formula
 from closedform.response.modes import Mode
 from closedform.response.names import Radical, RootPart
 from closedform.response.response import ClosedForms, Response
@@ -145,7 +145,7 @@ def _values(mode: Mode, forms: ClosedForms, digits: int) -> list[tuple[str, str]
 def _number(value: SurdSum | str, forms: ClosedForms, digits: int) -> tuple[str, Expression]:
     """Return the decimals of a number, and its exact form, or its name if it has none."""
     if isinstance(value, SurdSum):
-        return surd_decimal(value, digits), surd_expression(value)
+        return surd_decimal(value, digits), surd_formula(value)
     constant = next(c for c in forms.constants if c.name == value)
     exact = constant.definition
     formula = exact.formula if isinstance(exact, Radical) else Name(value)

@@ -19,7 +19,7 @@ from closedform.derivation.formulas import (
 from closedform.derivation.spectrum_steps import Eigenvalue, eigenvalues_of
 from closedform.derivation.step import Statement, Step, Symbol
 from closedform.notation.expression import Expression
-from closedform.response.amounts import surd_formula
+from closedform.notation.terms import surd_formula
 from closedform.response.response import Response
 
 __all__ = ["Block", "blocks_of", "eigenvectors_step", "entry_formula", "vector_formulas"]

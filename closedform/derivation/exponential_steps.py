@@ -12,7 +12,7 @@ from closedform.derivation.form_steps import Cell, Rows, block_diagonal, expande
 from closedform.derivation.formulas import ONE, ZERO, eigenvalue_formula, frequency_formula
 from closedform.derivation.step import Matrix, Statement, Step, Symbol
 from closedform.notation.expression import Call, Expression, Name, Negation, Power, number
-from closedform.response.amounts import negated, weighted
+from closedform.notation.terms import negated, weighted
 from closedform.response.closed_form import exponential_of_rate
 
 __all__ = ["exponential_step"]

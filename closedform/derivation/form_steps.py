@@ -11,7 +11,7 @@ from closedform.derivation.chain_steps import Block, entry_formula, vector_formu
 from closedform.derivation.formulas import ONE, ZERO, eigenvalue_formula, frequency_formula
 from closedform.derivation.step import Depth, Matrix, Statement, Step, Symbol
 from closedform.notation.expression import Expression, Negation, Number, number
-from closedform.response.amounts import negated, surd_formula
+from closedform.notation.terms import negated, surd_formula
 from closedform.response.modes import Mode
 
 __all__ = ["Cell", "Rows", "block_diagonal", "expanded", "jordan_step", "real_form_step"]

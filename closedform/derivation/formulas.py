@@ -11,7 +11,7 @@ from closedform.algebra.surds import SurdSum
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
 from closedform.notation.expression import Expression, Name, Number, Power, Sum, operations
 from closedform.notation.plain import plain
-from closedform.response.amounts import sum_of, surd_formula, weighted
+from closedform.notation.terms import sum_of, surd_formula, weighted
 from closedform.response.modes import Mode
 
 __all__ = [

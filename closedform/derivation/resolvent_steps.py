@@ -18,7 +18,7 @@ from closedform.algebra.surds import SurdSum
 from closedform.derivation.formulas import polynomial_formula, surd_matrix
 from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
 from closedform.notation.expression import Expression, Name, Power, number
-from closedform.response.amounts import weighted
+from closedform.notation.terms import weighted
 from closedform.response.response import LARGEST_WRITTEN_OUT, Response
 
 __all__ = ["expansion_of", "resolvent_steps"]

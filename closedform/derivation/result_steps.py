@@ -9,7 +9,7 @@ from closedform.derivation.identities import printed_item
 from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
 from closedform.notation.expression import Expression, Name
 from closedform.notation.plain import plain
-from closedform.response.amounts import surd_formula
+from closedform.notation.terms import surd_formula
 from closedform.response.response import LARGEST_WRITTEN_OUT, Response
 from closedform.response.sampling import default_times, sampled
 from closedform.verification.record import Check

@@ -28,7 +28,7 @@ from closedform.notation.expression import (
     Product,
     number,
 )
-from closedform.response.amounts import opened, sum_of, surd_formula, weighted
+from closedform.notation.terms import opened, sum_of, surd_formula, weighted
 from closedform.response.modes import Mode
 from closedform.response.names import NamedConstant, Radical, RootPart
 from closedform.response.response import Response

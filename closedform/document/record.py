@@ -12,7 +12,7 @@ from closedform.algebra.exponential import ModalTerm
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
 from closedform.algebra.surds import SurdSum
 from closedform.notation.plain import plain
-from closedform.response.amounts import surd_formula
+from closedform.notation.terms import surd_formula
 from closedform.response.names import Definition, NamedConstant, Radical, ResiduePart
 from closedform.response.response import LARGEST_WRITTEN_OUT, Response
 from closedform.response.sampling import constant_decimal

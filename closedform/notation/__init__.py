@@ -16,7 +16,7 @@ if TYPE_CHECKING:
     from closedform.notation.exact import exact_value
     from closedform.notation.linear import linear_combination
     from closedform.notation.reader import read_formula
-    from closedform.notation.surd_formula import surd_expression
+    from closedform.notation.terms import surd_formula
 
 __all__ = [
     "enclose",
@@ -24,7 +24,7 @@ __all__ = [
     "linear_combination",
     "plain",
     "read_formula",
-    "surd_expression",
+    "surd_formula",
 ]
 
 _HOMES = {
@@ -32,7 +32,7 @@ _HOMES = {
     "exact_value": "closedform.notation.exact",
     "linear_combination": "closedform.notation.linear",
     "read_formula": "closedform.notation.reader",
-    "surd_expression": "closedform.notation.surd_formula",
+    "surd_formula": "closedform.notation.terms",
 }
 
 

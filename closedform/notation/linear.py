@@ -20,7 +20,7 @@ from closedform.notation.expression import (
     Sum,
 )
 from closedform.notation.plain import plain
-from closedform.notation.surd_formula import surd_expression
+from closedform.notation.terms import surd_formula
 
 __all__ = ["linear_combination"]
 
@@ -48,7 +48,7 @@ def linear_combination(
     """
     result = _linear(expression, frozenset(states), place)
     if not result.constant.is_zero:
-        raise ConstantTermError(place, plain(surd_expression(result.constant)))
+        raise ConstantTermError(place, plain(surd_formula(result.constant)))
     return tuple(result.weights.get(state, ZERO) for state in states)
 
 

@@ -23,7 +23,7 @@ from closedform.notation.expression import (
     Power,
     operations,
 )
-from closedform.response.amounts import content_of, opened, sum_of, weighted
+from closedform.notation.terms import content_of, opened, sum_of, weighted
 from closedform.response.modes import Amount, Contribution
 
 __all__ = ["closed_form", "exponential_of_rate", "fronted_matrix"]

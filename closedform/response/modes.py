@@ -19,7 +19,7 @@ from closedform.algebra.parts import vanishing_parts
 from closedform.algebra.roots import enclosed_roots, roots_by_real_part
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
-from closedform.response.amounts import radical_formula, square_root_of_surd
+from closedform.notation.terms import radical_formula, square_root_of_surd
 from closedform.response.names import NameBook, Radical, ResiduePart, RootPart
 
 __all__ = ["Amount", "Contribution", "Mode", "contributions", "modes_of"]

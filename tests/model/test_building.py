@@ -27,7 +27,7 @@ from closedform.model.errors import (
 from closedform.model.model import Model
 from closedform.notation.errors import FormulaSyntaxError, NotFiniteError, SizeError
 from closedform.notation.plain import plain
-from closedform.notation.surd_formula import surd_expression
+from closedform.notation.terms import surd_formula
 
 SOUND: Mapping[str, Any] = {
     "title": "Two carts",
@@ -65,7 +65,7 @@ def test_numbers_are_taken_exactly(value: object, terms: dict[int, Fraction]) ->
 @given(st.fractions(), st.fractions(max_denominator=50), st.sampled_from([2, 3, 30]))
 def test_a_number_written_as_text_is_that_number(r: Fraction, c: Fraction, d: int) -> None:
     value = SurdSum.of({1: r, d: c})
-    assert built(initial=[plain(surd_expression(value)), str(r)]).initial == (
+    assert built(initial=[plain(surd_formula(value)), str(r)]).initial == (
         value,
         SurdSum.rational(r),
     )

@@ -19,7 +19,7 @@ from closedform.notation.errors import (
 from closedform.notation.exact import exact_value
 from closedform.notation.expression import Expression, Name, Negation, Product, Sum
 from closedform.notation.linear import linear_combination
-from closedform.notation.surd_formula import surd_expression
+from closedform.notation.terms import surd_formula
 from tests.notation.formulas import HERE, read
 
 STATES = ("x1", "x2", "v")
@@ -57,7 +57,7 @@ WEIGHTS = st.tuples(
 @given(WEIGHTS)
 def test_a_sum_of_weights_times_states_gives_the_weights(weights: tuple[SurdSum, ...]) -> None:
     terms: list[Expression] = [
-        Product((surd_expression(w), Name(s))) for w, s in zip(weights, STATES, strict=True)
+        Product((surd_formula(w), Name(s))) for w, s in zip(weights, STATES, strict=True)
     ]
     assert linear_combination(Sum(tuple(terms)), STATES, HERE) == weights
     negated = tuple(-w for w in weights)

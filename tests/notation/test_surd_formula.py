@@ -13,7 +13,7 @@ from closedform.errors import Place
 from closedform.notation.exact import exact_value
 from closedform.notation.expression import Negation, operations
 from closedform.notation.plain import plain
-from closedform.notation.surd_formula import surd_expression
+from closedform.notation.terms import surd_formula
 from tests.notation.formulas import read
 
 WRITTEN = [
@@ -44,7 +44,7 @@ WRITTEN = [
 
 @pytest.mark.parametrize("text", WRITTEN)
 def test_numbers_in_their_shortest_form_stay_as_they_are(text: str) -> None:
-    assert plain(surd_expression(exact_value(read(text), Place()))) == text
+    assert plain(surd_formula(exact_value(read(text), Place()))) == text
 
 
 SHORTENED = [
@@ -58,7 +58,7 @@ SHORTENED = [
 
 @pytest.mark.parametrize(("text", "shortest"), SHORTENED)
 def test_other_spellings_are_brought_to_the_shortest(text: str, shortest: str) -> None:
-    assert plain(surd_expression(exact_value(read(text), Place()))) == shortest
+    assert plain(surd_formula(exact_value(read(text), Place()))) == shortest
 
 
 SURDS = st.dictionaries(
@@ -68,14 +68,14 @@ SURDS = st.dictionaries(
 
 @given(SURDS)
 def test_the_formula_means_the_number(value: SurdSum) -> None:
-    assert exact_value(surd_expression(value), Place()) == value
-    assert exact_value(read(plain(surd_expression(value))), Place()) == value
+    assert exact_value(surd_formula(value), Place()) == value
+    assert exact_value(read(plain(surd_formula(value))), Place()) == value
 
 
 @given(SURDS)
 def test_a_positive_term_comes_first_and_a_sign_costs_at_most_one_operation(value: SurdSum) -> None:
-    assert abs(operations(surd_expression(value)) - operations(surd_expression(-value))) <= 1
+    assert abs(operations(surd_formula(value)) - operations(surd_formula(-value))) <= 1
     if any(c > 0 for _, c in value.terms):
-        assert not isinstance(surd_expression(value), Negation)
-        assert not plain(surd_expression(value)).lstrip("(").startswith("-")
-    assert value.terms or plain(surd_expression(value)) == str(Fraction(0))
+        assert not isinstance(surd_formula(value), Negation)
+        assert not plain(surd_formula(value)).lstrip("(").startswith("-")
+    assert value.terms or plain(surd_formula(value)) == str(Fraction(0))

@@ -8,15 +8,16 @@ from math import gcd, isqrt, lcm
 
 from closedform.algebra.surds import SurdSum, drawn_out, root_of_rational
 from closedform.notation.expression import (
+    ONE,
     Call,
     Expression,
     Negation,
     Number,
-    Product,
     Quotient,
     Sum,
     number,
     operations,
+    product,
 )
 
 __all__ = [
@@ -29,8 +30,6 @@ __all__ = [
     "surd_formula",
     "weighted",
 ]
-
-ONE = Number(Fraction(1))
 
 
 def square_root_of_surd(value: SurdSum) -> SurdSum | None:
@@ -73,8 +72,29 @@ def radical_formula(square: SurdSum) -> Expression:
 
 
 def surd_formula(value: SurdSum) -> Expression:
-    """Return a number as a formula, denominators gathered, a positive term first."""
-    return weighted(value, [], []) if not value.is_zero else Number(Fraction(0))
+    """Return the shortest formula of a number: of equals, the terms over one denominator.
+
+    A positive term comes first, if there is one; the others follow by radicand.
+
+    >>> from closedform.notation.plain import plain
+    >>> plain(surd_formula(SurdSum.of({1: Fraction(-1, 2), 5: Fraction(1, 2)})))
+    '(sqrt(5) - 1)/2'
+    """
+    if value.is_rational:
+        return number(value.as_fraction())
+    denominator = lcm(*(c.denominator for _, c in value.terms))
+    above = _terms_apart(value * SurdSum.rational(denominator))
+    if isinstance(above, Negation):
+        together: Expression = Negation(_fraction([above.operand], [number(denominator)]))
+    else:
+        together = _fraction([above], [number(denominator)])
+    apart = opened(_terms_apart(value))
+    forms = (opened(together), apart, weighted(value, (), ()))
+    return min(forms, key=operations)
+
+
+def _terms_apart(value: SurdSum) -> Expression:
+    return sum_of([weighted(SurdSum.of({d: c}), (), ()) for d, c in value.terms])
 
 
 def weighted(
@@ -91,15 +111,10 @@ def weighted(
         return Negation(weighted(-value, factors, divisors))
     denominator = lcm(*(c.denominator for _, c in value.terms))
     if len(value.terms) > 1:
-        common = gcd(*(c.numerator * (denominator // c.denominator) for _, c in value.terms))
-        terms = [
-            (_product([Number(Fraction(abs(n))), _surd(d)]), n < 0)
-            for d, n in ((d, int(c * denominator) // common) for d, c in value.terms)
-        ]
-        terms.sort(key=lambda term: term[1])
-        total = Sum(tuple(Negation(term) if minus else term for term, minus in terms))
-        return _fraction(
-            [Number(Fraction(common)), total, *factors], [Number(Fraction(denominator)), *divisors]
+        content = gcd(*(int(c * denominator) for _, c in value.terms))
+        return min(
+            (_gathered(value, top, denominator, factors, divisors) for top in (1, content)),
+            key=operations,
         )
     ((radicand, coefficient),) = value.terms
     top, bottom = Fraction(coefficient.numerator), Fraction(coefficient.denominator)
@@ -112,6 +127,23 @@ def weighted(
         [Number(Fraction(turned.denominator)), _surd(radicand), *divisors],
     )
     return other if operations(other) < operations(usual) else usual
+
+
+def _gathered(
+    value: SurdSum,
+    top: int,
+    bottom: int,
+    factors: Sequence[Expression],
+    divisors: Sequence[Expression],
+) -> Expression:
+    """top/bottom times what is then left of the value, in brackets, positive terms first."""
+    terms = [
+        (product((number(abs(n)), _surd(d))), n < 0)
+        for d, n in ((d, int(c * bottom) // top) for d, c in value.terms)
+    ]
+    terms.sort(key=lambda term: term[1])
+    total = Sum(tuple(Negation(term) if minus else term for term, minus in terms))
+    return _fraction([number(top), total, *factors], [number(bottom), *divisors])
 
 
 def sum_of(terms: Sequence[Expression]) -> Expression:
@@ -173,18 +205,8 @@ def _surd(radicand: int) -> Expression:
     return ONE if radicand == 1 else Call("sqrt", number(radicand))
 
 
-def _product(factors: Sequence[Expression]) -> Expression:
-    flat: list[Expression] = []
-    for factor in factors:
-        flat.extend(factor.factors if isinstance(factor, Product) else [factor])
-    flat = [factor for factor in flat if factor != ONE]
-    if not flat:
-        return ONE
-    return flat[0] if len(flat) == 1 else Product(tuple(flat))
-
-
 def _fraction(above: Sequence[Expression], below: Sequence[Expression]) -> Expression:
-    top, bottom = _product(above), _product(below)
+    top, bottom = product(above), product(below)
     if bottom == ONE:
         return top
     if isinstance(top, Number) and isinstance(bottom, Number):

@@ -22,7 +22,7 @@ from closedform.notation.expression import (
     operations,
 )
 from closedform.notation.plain import plain
-from closedform.response.amounts import (
+from closedform.notation.terms import (
     content_of,
     negated,
     opened,
@@ -61,10 +61,10 @@ def surds(**terms: int | Fraction) -> SurdSum:
         (surds(r1=1, r2=1), "1 + sqrt(2)"),
         (surds(r1=1, r2=-1), "1 - sqrt(2)"),
         (surds(r1=-1, r2=1), "sqrt(2) - 1"),
-        (surds(r1=-1, r2=-1), "-(1 + sqrt(2))"),
+        (surds(r1=-1, r2=-1), "-1 - sqrt(2)"),
         (surds(r1=Fraction(1, 2), r5=Fraction(1, 2)), "(1 + sqrt(5))/2"),
-        (surds(r1=2, r5=4), "2*(1 + 2*sqrt(5))"),
-        (surds(r1=Fraction(3, 2), r5=Fraction(-9, 4)), "3*(2 - 3*sqrt(5))/4"),
+        (surds(r1=2, r5=4), "2 + 4*sqrt(5)"),
+        (surds(r1=Fraction(3, 2), r5=Fraction(-9, 4)), "(6 - 9*sqrt(5))/4"),
     ],
     ids=str,
 )
