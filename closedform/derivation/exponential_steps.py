@@ -11,7 +11,7 @@ from closedform.derivation.chain_steps import Block
 from closedform.derivation.form_steps import Cell, Rows, block_diagonal, expanded
 from closedform.derivation.formulas import ONE, ZERO, eigenvalue_formula, frequency_formula
 from closedform.derivation.step import Matrix, Statement, Step, Symbol
-from closedform.notation.expression import Call, Expression, Name, Negation, Power, number
+from closedform.notation.expression import Call, Expression, Name, Negation, power_of
 from closedform.notation.terms import negated, weighted
 from closedform.response.closed_form import exponential_of_rate
 
@@ -66,12 +66,8 @@ def _exponential_of(value: Expression, time: str) -> Expression:
 
 def _chain_entry(step: int, factors: Sequence[Expression], time: str) -> Expression:
     """t^step/step! times the factors."""
-    t = Name(time)
-    powers: list[Expression] = []
-    if step:
-        powers = [t if step == 1 else Power(t, number(step))]
-    kept = [factor for factor in factors if factor != ONE]
-    return weighted(SurdSum.rational(Fraction(1, factorial(step))), [*powers, *kept], [])
+    weight = SurdSum.rational(Fraction(1, factorial(step)))
+    return weighted(weight, [power_of(Name(time), step), *factors], [])
 
 
 def _rotation(block: Block, step: int, time: str) -> Cell:

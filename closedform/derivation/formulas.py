@@ -9,7 +9,16 @@ from math import lcm
 from closedform.algebra.field import BaseField, Polynomial
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
-from closedform.notation.expression import Expression, Name, Number, Power, Sum, operations
+from closedform.notation.expression import (
+    ONE,
+    ZERO,
+    Expression,
+    Name,
+    Number,
+    Sum,
+    operations,
+    power_of,
+)
 from closedform.notation.plain import plain
 from closedform.notation.terms import sum_of, surd_formula, weighted
 from closedform.response.modes import Mode
@@ -33,8 +42,6 @@ __all__ = [
 
 A = Symbol("matrix", letter="A")
 LAMBDA = Name("lambda")
-ZERO = Number(Fraction(0))
-ONE = Number(Fraction(1))
 
 
 def number_formula(value: SurdSum | str) -> Expression:
@@ -49,7 +56,7 @@ def polynomial_formula(field: BaseField, polynomial: Polynomial, variable: Name)
     for power, element in zip(range(degree, -1, -1), polynomial.to_list(), strict=True):
         value = field.surds(element)
         if not value.is_zero:
-            terms.append(weighted(value, _power(variable, power), []))
+            terms.append(weighted(value, [power_of(variable, power)], []))
     return in_order(terms)
 
 
@@ -58,12 +65,6 @@ def in_order(terms: Sequence[Expression]) -> Expression:
     if len(terms) > 1:
         return Sum(tuple(terms))
     return sum_of(terms)
-
-
-def _power(variable: Name, power: int) -> list[Expression]:
-    if power == 0:
-        return []
-    return [variable if power == 1 else Power(variable, Number(Fraction(power)))]
 
 
 def frequency_formula(value: SurdSum, mode: Mode, unit: Sequence[Expression] = ()) -> Expression:

@@ -17,7 +17,7 @@ from closedform.algebra.field import FieldMatrix
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.formulas import polynomial_formula, surd_matrix
 from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
-from closedform.notation.expression import Expression, Name, Power, number
+from closedform.notation.expression import ONE, Expression, Name, power_of
 from closedform.notation.terms import weighted
 from closedform.response.response import LARGEST_WRITTEN_OUT, Response
 
@@ -74,15 +74,13 @@ def expansion_of(response: Response) -> Side:
             ]
             for letter, g in terms:
                 front = _power_over_factorial(t, power)
-                parts.append((letter, g) if front is None else (front, letter, g))
+                parts.append((letter, g) if front == ONE else (front, letter, g))
     return Symbol("sum", parts=tuple(parts))
 
 
-def _power_over_factorial(t: Name, power: int) -> Expression | None:
-    if power == 0:
-        return None
-    base: Expression = t if power == 1 else Power(t, number(power))
-    return weighted(SurdSum.rational(Fraction(1, factorial(power))), [base], [])
+def _power_over_factorial(t: Name, power: int) -> Expression:
+    weight = SurdSum.rational(Fraction(1, factorial(power)))
+    return weighted(weight, [power_of(t, power)], [])
 
 
 def _parts(response: Response) -> list[_Part]:

@@ -21,13 +21,7 @@ from closedform.derivation.formulas import (
     surd_matrix,
 )
 from closedform.derivation.step import Side, Statement, Step, Symbol
-from closedform.notation.expression import (
-    Expression,
-    Name,
-    Power,
-    Product,
-    number,
-)
+from closedform.notation.expression import Expression, Name, number, power_of, product
 from closedform.notation.terms import opened, sum_of, surd_formula, weighted
 from closedform.response.modes import Mode
 from closedform.response.names import NamedConstant, Radical, RootPart
@@ -123,13 +117,10 @@ def characteristic_polynomial_step(response: Response) -> Step:
 
 
 def _factored(response: Response) -> Expression:
-    factors: list[Expression] = []
-    for factor in response.spectrum.factors:
-        body = polynomial_formula(response.field, factor.p, LAMBDA)
-        if factor.multiplicity > 1:
-            body = Power(body, number(factor.multiplicity))
-        factors.append(body)
-    return factors[0] if len(factors) == 1 else Product(tuple(factors))
+    return product(
+        power_of(polynomial_formula(response.field, factor.p, LAMBDA), factor.multiplicity)
+        for factor in response.spectrum.factors
+    )
 
 
 def eigenvalues_step(response: Response, digits: int) -> Step:
@@ -242,7 +233,7 @@ def _even_statements(response: Response, factor: Factor) -> list[Statement]:
     base: Expression = LAMBDA
     if not centre.is_zero:
         base = sum_of([LAMBDA, surd_formula(-centre)])
-    square = Power(base, number(2))
+    square = power_of(base, 2)
     return [
         Statement("substitution", (Name("mu"), square)),
         Statement("polynomial", (polynomial, number(0))),

@@ -19,6 +19,7 @@ from closedform.notation.expression import (
     Product,
     Quotient,
     Sum,
+    product,
 )
 from closedform.notation.latex.box import BINARY, Box, joined
 from closedform.notation.latex.formula import factors_of, formula, signed, terms_of
@@ -88,16 +89,16 @@ def _opened(term: Expression, room: float) -> list[Box]:
     return [whole]
 
 
-def _of_product(product: Product, room: float) -> list[Box]:
-    factors = factors_of(product)
-    whole = formula(product) if len(product.factors) > 1 else None
+def _of_product(whole_product: Product, room: float) -> list[Box]:
+    factors = factors_of(whole_product)
+    whole = formula(whole_product) if len(whole_product.factors) > 1 else None
     if whole is not None and whole.width <= room:
         return [whole]
     widths = [formula(factor).width for factor in factors]
     widest = widths.index(max(widths))
     found: list[Box] = []
     if widest:
-        found.append(formula(_product(factors[:widest])))
+        found.append(formula(product(factors[:widest])))
     middle = factors[widest]
     if isinstance(middle, Sum | Negation):
         opened = _in_brackets(middle, room)
@@ -106,12 +107,8 @@ def _of_product(product: Product, room: float) -> list[Box]:
         opened = _opened(middle, room)
         found += [_after_dot(opened[0]), *opened[1:]] if found else opened
     if widest + 1 < len(factors):
-        found.append(_after_dot(formula(_product(factors[widest + 1 :]))))
+        found.append(_after_dot(formula(product(factors[widest + 1 :]))))
     return found
-
-
-def _product(factors: tuple[Expression, ...]) -> Expression:
-    return factors[0] if len(factors) == 1 else Product(factors)
 
 
 def _led(head: Box, following: list[Box]) -> list[Box]:

@@ -8,6 +8,8 @@ from math import lcm
 from closedform.derivation.proof.rewriting import require_equal
 from closedform.derivation.step import Matrix
 from closedform.notation.expression import (
+    ONE,
+    ZERO,
     Call,
     Expression,
     Negation,
@@ -22,8 +24,6 @@ from closedform.notation.latex.formula import factors_of, formula, signed
 
 __all__ = ["ZERO", "front_box", "matrix_box", "matrix_height", "with_front"]
 
-ZERO = Number(Fraction(0))
-ONE = Number(Fraction(1))
 LARGEST_COMMON_DENOMINATOR = 9999
 COLUMN_GAP = 0.95
 TIGHT_GAP = 0.5

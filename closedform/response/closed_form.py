@@ -20,8 +20,8 @@ from closedform.notation.expression import (
     Name,
     Negation,
     Number,
-    Power,
     operations,
+    power_of,
 )
 from closedform.notation.terms import content_of, opened, sum_of, weighted
 from closedform.response.modes import Amount, Contribution
@@ -36,7 +36,7 @@ class _Term:
     """An amount of power · kernel inside a group: power is t^j, kernel cos, sin, cosh or sinh."""
 
     amount: Amount
-    power: Expression | None
+    power: Expression
     kernel: Expression | None
 
 
@@ -122,12 +122,6 @@ def _times_time(rate: SurdSum | str, time: str) -> Expression | None:
     return None if rate.is_zero else weighted(rate, [Name(time)], [])
 
 
-def _power_of_time(time: str, power: int) -> Expression | None:
-    if power == 0:
-        return None
-    return Name(time) if power == 1 else Power(Name(time), Number(Fraction(power)))
-
-
 def _surd(value: SurdSum | str | None) -> SurdSum:
     """Narrow the type of a number of which `_splits` said that it has no name."""
     if not isinstance(value, SurdSum):
@@ -173,7 +167,7 @@ def _terms(
             exponential = exponential_of_rate(rate + signed * gap, time)
             for power, (even, odd) in enumerate(contribution.amounts):
                 amount = Amount((even.value + signed * odd.value) * half)
-                result.append((exponential, _Term(amount, _power_of_time(time, power), None)))
+                result.append((exponential, _Term(amount, power_of(Name(time), power), None)))
         return result
     exponential = exponential_of_rate(mode.rate, time)
     names = {"real": (None, None), "circular": ("cos", "sin"), "hyperbolic": ("cosh", "sinh")}
@@ -184,7 +178,7 @@ def _terms(
                 argument = _times_time(mode.frequency, time)
                 if argument is not None:
                     kernel = Call(function, argument)
-            result.append((exponential, _Term(amount, _power_of_time(time, power), kernel)))
+            result.append((exponential, _Term(amount, power_of(Name(time), power), kernel)))
     return result
 
 
@@ -244,9 +238,7 @@ def _signed_product(front: SurdSum, outside: list[Expression], inside: Expressio
 def _written_term(term: _Term, outside: list[Expression]) -> Expression:
     factors: list[Expression] = []
     factors += [Name(name) for name in (term.amount.name, term.amount.times) if name is not None]
-    if term.power is not None:
-        factors.append(term.power)
-    factors += outside
+    factors += [term.power, *outside]
     if term.kernel is not None:
         factors.append(term.kernel)
     divisors: list[Expression] = [] if term.amount.over is None else [Name(term.amount.over)]
