@@ -19,6 +19,7 @@ from closedform.derivation.formulas import (
 from closedform.derivation.spectrum_steps import Eigenvalue, eigenvalues_of
 from closedform.derivation.step import Statement, Step, Symbol
 from closedform.notation.expression import Expression
+from closedform.notation.plain import plain
 from closedform.notation.terms import surd_formula
 from closedform.response.response import Response
 
@@ -26,6 +27,7 @@ __all__ = ["Block", "blocks_of", "eigenvectors_step", "entry_formula", "vector_f
 
 Entry = tuple[SurdSum, SurdSum]
 """x + y w, where w is the square root that belongs to the eigenvalue (w^2 = D)."""
+_LONGEST_IN_A_SENTENCE = 32
 
 
 @dataclass(frozen=True)
@@ -111,6 +113,7 @@ def eigenvectors_step(eigenvalue: Eigenvalue, blocks: Sequence[Block]) -> Step:
                 )
     facts = {
         "eigenvalue": argument,
+        "long": len(plain(argument)) > _LONGEST_IN_A_SENTENCE,
         "numbers": eigenvalue.numbers,
         "multiplicity": factor.multiplicity,
         "index": factor.index,

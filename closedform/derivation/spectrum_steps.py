@@ -146,7 +146,11 @@ def eigenvalues_step(response: Response, digits: int) -> Step:
         if isinstance(constant.definition, Radical):
             sides: tuple[Side, ...] = (Name(constant.name), constant.definition.formula)
             statements.append(Statement("eigenvalues", sides))
-    facts: dict[str, object] = {"rows": rows, "field": _field_name(response)}
+    facts: dict[str, object] = {
+        "rows": rows,
+        "field": _field_name(response),
+        "named": any(isinstance(c.definition, RootPart) for c in response.closed_forms.constants),
+    }
     rests_on = ("characteristic_polynomial",)
     return Step("eigenvalues", tuple(statements), facts, rests_on, "summary")
 
@@ -219,6 +223,7 @@ def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
             {
                 "even": even,
                 "degree": factor.degree,
+                "whole": factor.degree == len(response.model.states),
                 "rows": [_row(eigenvalue, constant, digits) for eigenvalue, constant in named],
             },
             rests_on=("eigenvalues",),

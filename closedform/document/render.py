@@ -22,6 +22,8 @@ __all__ = [
     "DEPTHS",
     "TemplateError",
     "UnknownDepthError",
+    "UnusableDigitsError",
+    "check_options",
     "check_template",
     "render",
     "templates_folder",
@@ -30,6 +32,7 @@ __all__ = [
 DEPTHS: tuple[str, ...] = get_args(Depth)
 """From little to all.  In full, every part also names what it rests on."""
 
+MOST_DIGITS = 1000
 MAIN = "writeup.tex.j2"
 _T = TypeVar("_T")
 LONGEST_FOOT = 60
@@ -44,6 +47,17 @@ class UnknownDepthError(InputError):
 
     def __str__(self) -> str:
         return f"No depth is called {self.depth!r}; choose one of {', '.join(DEPTHS)}."
+
+
+class UnusableDigitsError(InputError):
+    """A number of digits that tables cannot have."""
+
+    def __init__(self, digits: int) -> None:
+        super().__init__(digits)
+        self.digits = digits
+
+    def __str__(self) -> str:
+        return f"Tables have from 1 to {MOST_DIGITS} significant digits, not {self.digits}."
 
 
 class TemplateError(InputError):
@@ -66,6 +80,17 @@ def templates_folder() -> Traversable:
     package = resources.files("closedform")
     inside = package / "templates"
     return inside if inside.is_dir() else Path(str(package)).parent / "templates"
+
+
+def check_options(*, depth: str, digits: int) -> None:
+    """Refuse a depth that is none, and digits of tables below 1 or above `MOST_DIGITS`.
+
+    Raises:  UnknownDepthError, UnusableDigitsError.
+    """
+    if depth not in DEPTHS:
+        raise UnknownDepthError(depth)
+    if not 1 <= digits <= MOST_DIGITS:
+        raise UnusableDigitsError(digits)
 
 
 def check_template(template: str | Path) -> None:

@@ -9,7 +9,7 @@ from closedform.derivation.build import derive
 from closedform.document.engine import compile_pdf
 from closedform.document.files import write_whole
 from closedform.document.record import record_text
-from closedform.document.render import check_template, render
+from closedform.document.render import check_options, check_template, render
 from closedform.model.model import Model
 from closedform.response.response import Response, respond
 from closedform.verification.record import ResponseRefutedError, VerificationRecord
@@ -41,11 +41,13 @@ def write_up(
     `into` is the folder, made if it is not there; `depth` is summary, working or full;
     `digits` are the significant digits of the tables.
 
-    Raises:  TemplateError if there is no such template;
+    Raises:  UnknownDepthError, UnusableDigitsError for options out of their range;
+             TemplateError if there is no such template;
              ResponseRefutedError if any identity is refuted, StatementRefutedError if a
              statement of the derivation is (then nothing is written);
              CannotWriteError if a file cannot be written.
     """
+    check_options(depth=depth, digits=digits)
     check_template(template)
     response = respond(model)
     verification = verify(response)

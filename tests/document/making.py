@@ -162,6 +162,7 @@ def vectors(
         statements,
         {
             "eigenvalue": eigenvalue,
+            "long": False,
             "multiplicity": multiplicity,
             "index": index,
             "geometric multiplicity": geometric,

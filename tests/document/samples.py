@@ -60,7 +60,7 @@ def two_real() -> Derivation:
                     says("eigenvalues", scalar("lambda", "1"), q(-1)),
                     says("eigenvalues", scalar("lambda", "2"), q("-5/2")),
                 ),
-                {"field": "Q", "rows": [row(q(-1), "-1"), row(q("-5/2"), "-2.5")]},
+                {"field": "Q", "named": False, "rows": [row(q(-1), "-1"), row(q("-5/2"), "-2.5")]},
             ),
             vectors(
                 q(-1),
@@ -179,6 +179,7 @@ def oscillator() -> Derivation:
                 ),
                 {
                     "field": "Q",
+                    "named": False,
                     "rows": [
                         row(
                             Symbol("pair", parts=(q("-1/2"), w)),
@@ -283,7 +284,11 @@ def defective() -> Derivation:
             Step(
                 "eigenvalues",
                 (says("eigenvalues", scalar("lambda", "1"), q(-2)),),
-                {"field": "Q", "rows": [row(q(-2), "-2", multiplicity=3, blocks=(3,))]},
+                {
+                    "field": "Q",
+                    "named": False,
+                    "rows": [row(q(-2), "-2", multiplicity=3, blocks=(3,))],
+                },
             ),
             vectors(
                 q(-2),
@@ -355,7 +360,7 @@ def one_state() -> Derivation:
             Step(
                 "eigenvalues",
                 (says("eigenvalues", scalar("lambda", "1"), q("-1/4")),),
-                {"field": "Q", "rows": [row(q("-1/4"), "-0.25")]},
+                {"field": "Q", "named": False, "rows": [row(q("-1/4"), "-0.25")]},
             ),
             vectors(q("-1/4"), says("eigenvector", vector("v", "1"), column(1))),
             Step("transition", (says("exp A", TRANSITION, matrix((e,))),), {"route": "resolvent"}),

@@ -15,10 +15,13 @@ from closedform.document.render import (
     DEPTHS,
     TemplateError,
     UnknownDepthError,
+    UnusableDigitsError,
     render,
     templates_folder,
 )
+from closedform.document.writeup import write_up
 from closedform.errors import InputError
+from closedform.model.building import system
 from tests.document.samples import SAMPLES, hostile, one_state, oscillator, two_real
 
 
@@ -154,6 +157,15 @@ def test_an_unknown_template_or_depth_is_refused() -> None:
         render(one_state(), template="nowhere")
     with pytest.raises(UnknownDepthError, match="summary, working, full"):
         render(one_state(), depth="deep")
+
+
+def test_options_out_of_range_are_refused_before_any_work(tmp_path: Path) -> None:
+    model = system([[-1]], initial=[1])
+    with pytest.raises(UnusableDigitsError, match="from 1 to 1000 significant digits, not 0"):
+        write_up(model, into=tmp_path, digits=0)
+    with pytest.raises(UnknownDepthError):
+        write_up(model, into=tmp_path, depth="deep")
+    assert not list(tmp_path.iterdir())
 
 
 def test_a_step_without_a_part_is_named() -> None:

@@ -61,7 +61,7 @@ def six_wide() -> Derivation:
         (
             model("", names, a, column(*range(1, n + 1))),
             polynomial(add(*(prod(1234 + k, Power(LAM, q(n - k))) for k in range(n)), 77)),
-            Step("eigenvalues", (), {"rows": [row(wide_terms(1, 1), "-1")]}),
+            Step("eigenvalues", (), {"named": False, "rows": [row(wide_terms(1, 1), "-1")]}),
             Step("jordan_form", (says("P", P, p), says("J", J, a)), {"diagonal": False}),
             Step(
                 "transition",
@@ -140,7 +140,11 @@ def ten_named(*, several: bool = True) -> Derivation:
             Step(
                 "eigenvalues",
                 (),
-                {"field": "Q(sqrt(2), sqrt(3))", "rows": [row(scalar("lambda", "1"), "1.2i")]},
+                {
+                    "field": "Q(sqrt(2), sqrt(3))",
+                    "named": True,
+                    "rows": [row(scalar("lambda", "1"), "1.2i")],
+                },
             ),
             Step(
                 "named_roots",
@@ -166,6 +170,7 @@ def ten_named(*, several: bool = True) -> Derivation:
                         for i, w in enumerate(omegas)
                     ],
                     "degree": n,
+                    "whole": True,
                 },
             ),
             Step(
