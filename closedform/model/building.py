@@ -23,7 +23,7 @@ from closedform.model.errors import (
     WrongKindError,
 )
 from closedform.model.model import Model, Output
-from closedform.model.naming import check_lookalike, check_name, check_states
+from closedform.model.naming import check_lookalike, check_name, check_states, check_time
 from closedform.model.source import Source
 from closedform.notation.latex.names import printed_key
 from closedform.notation.linear import linear_combination
@@ -120,7 +120,7 @@ def build(mapping: Mapping[str, object], name: str, source: Source) -> Model:
     if not title:
         raise WrongKindError(source.at("title"), "a title", "empty text")
     time = _text(mapping.get("time", "t"), "time", source)
-    check_name(time, "time", source)
+    check_time(time, source)
     given = _array(mapping["states"], "an array of names", "states", source)
     states = check_states(given, time, source)
     return Model(

@@ -20,7 +20,7 @@ from closedform.notation.expression import FUNCTIONS
 from closedform.notation.greek import ascii_name
 from closedform.notation.latex.names import printed_key
 
-__all__ = ["MOST_STATES", "check_lookalike", "check_name", "check_states"]
+__all__ = ["MOST_STATES", "check_lookalike", "check_name", "check_states", "check_time"]
 
 MOST_STATES = 400
 LONGEST_NAME = 64
@@ -31,6 +31,7 @@ KEPT = {
     "pi": "in a formula people take it for the number 3.14159...; write 'p_i' or 'pi_1'",
 }
 """Names that mean something else in a formula, and what to write."""
+LETTERS_OF_WRITE_UPS = ("lambda", "mu", "s", "p", "g", "r")
 
 
 def check_name(
@@ -60,6 +61,17 @@ def check_name(
         reason = "a state has that name; choose another"
     if reason:
         raise UnusableNameError(_place(key, source), name, reason)
+
+
+def check_time(name: str, source: Source) -> None:
+    """Raise UnusableNameError unless a name can stand for the time.
+
+    The letters that a write-up uses itself, as functions or variables, are no names of it.
+    """
+    check_name(name, "time", source)
+    if printed_key(name) in map(printed_key, LETTERS_OF_WRITE_UPS):
+        reason = "a write-up uses this letter for something else; 't' or 'tau' will do"
+        raise UnusableNameError(source.at("time"), name, reason)
 
 
 def check_lookalike(name: str, key: str, source: Source, printed: dict[str, str]) -> None:

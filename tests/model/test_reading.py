@@ -27,7 +27,7 @@ def test_a_model_file_is_read_exactly(tmp_path: Path) -> None:
 summary = \"\"\"
 A bench.
 \"\"\"
-time = "s"
+time = "z"
 times = [0, 0.5, "sqrt(2)/2", 1_0.2_5, "1/3", -1e-1]
 [outputs]
 drift = "(x1 - x2)/2 + sqrt(2)*x2"
@@ -37,7 +37,7 @@ drift = "(x1 - x2)/2 + sqrt(2)*x2"
     assert model.name == "bench"
     assert model.title == "Two carts"
     assert model.summary == "A bench."
-    assert model.time == "s"
+    assert model.time == "z"
     assert model.states == ("x1", "x2")
     assert model.matrix == (
         (RATIONAL(0), RATIONAL(1)),
