@@ -39,6 +39,8 @@ EQUAL_BITS = 2048
 """Real parts that so many bits, measured by the roots' size, do not tell apart count as equal."""
 _KEY_BITS = 96
 
+_STIFF = 100
+
 
 @dataclass(frozen=True)
 class RootSet:
@@ -104,12 +106,27 @@ def root_set(field: BaseField, p: Polynomial) -> RootSet:
         return RootSet(field, p, "named", centre)
     squares = field.polynomial([moved.nth(k) for k in range(d, -1, -2)])
     if d == 2:
+        if _far_apart(field, p):
+            return RootSet(field, p, "named", centre)
         return RootSet(field, p, "quadratic", centre, squares)
     found = enclosed_roots(field, squares)
     all_real = all(mu.imag == 0 for mu in found)
     if all_real and (all(mu.real < 0 for mu in found) or _half_gap(field, squares) is not None):
         return RootSet(field, p, "even", centre, squares)
     return RootSet(field, p, "named", centre)
+
+
+def _far_apart(field: BaseField, p: Polynomial) -> bool:
+    """Whether p has a fast and a slow real root of one sign, more than `_STIFF` times apart.
+
+    a ± sqrt(D) is then no good form: over the time of the slow root, cosh and sinh grow
+    beyond what a program holds, and cancel.  Only the form hangs on it.
+    """
+    low, high = enclosed_roots(field, p)
+    if low.imag != 0 or not low.real * high.real > 0:
+        return False
+    slow, fast = sorted((abs(low.real), abs(high.real)), key=lambda ball: ball.mid())
+    return bool(fast > _STIFF * slow)
 
 
 def _mean(field: BaseField, p: Polynomial) -> Scalar:

@@ -30,6 +30,11 @@ class Factor:
         return int(self.p.degree())
 
     @property
+    def has_short_roots(self) -> bool:
+        """Whether the roots are written without names: one in K, or a pair a ± sqrt(D)."""
+        return self.roots.form in {"single", "quadratic"}
+
+    @property
     def multiplicity(self) -> int:
         """The algebraic multiplicity of each root."""
         return sum(self.blocks)

@@ -76,7 +76,7 @@ def frequency_formula(value: SurdSum, mode: Mode, unit: Sequence[Expression] = (
         return weighted(value * mode.frequency, unit, [])
     name = Name(str(mode.frequency))
     above = weighted(value, [name, *unit], [])
-    if mode.factor.degree != 2:
+    if mode.factor.roots.form != "quadratic":
         return above
     field, roots = mode.factor.roots.field, mode.factor.roots
     square = field.surds(-roots.discriminant if mode.kind == "circular" else roots.discriminant)

@@ -96,7 +96,7 @@ class Response:
     def has_chains_in_print(self) -> bool:
         """Whether eigenvectors, P, J and P^(-1) are printed: small, with eigenvalues in surds."""
         small = len(self.model.states) <= LARGEST_WRITTEN_OUT
-        return small and all(factor.degree <= 2 for factor in self.spectrum.factors)
+        return small and all(factor.has_short_roots for factor in self.spectrum.factors)
 
     @property
     def transition(self) -> FormulaMatrix:
@@ -210,7 +210,7 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     else:
         solution = column(response.state)
         outputs = column(response.output)
-    needs_impulses = any(factor.degree > 2 for factor in factors)
+    needs_impulses = not all(factor.has_short_roots for factor in factors)
     impulses = tuple(
         _impulse(response.field, factor, modes_of_factor, book, model.time)
         if needs_impulses
