@@ -86,7 +86,8 @@ def _product_boxes(members: tuple[Side, ...]) -> list[Box]:
 
 def _binds_loosely(side: Side) -> bool:
     if isinstance(side, Symbol):
-        return side.kind in COMPOUND and not (side.kind == "shifted" and side.order > 1)
+        lone = side.kind == "shifted" and (side.order > 1 or side.argument == ZERO)
+        return side.kind in COMPOUND and not lone
     return isinstance(side, Sum | Negation)
 
 

@@ -97,3 +97,8 @@ def test_a_shifted_matrix_needs_its_eigenvalue() -> None:
 def test_what_is_no_side_is_refused() -> None:
     with pytest.raises(TypeError, match="is no side"):
         side_box("x")  # type: ignore[arg-type]
+
+
+def test_a_matrix_shifted_by_zero_stands_without_brackets() -> None:
+    shifted = S("shifted", argument=q(0))
+    assert side_box((shifted, S("vector", letter="v"))).latex == (r"\boldsymbol{A}\,\boldsymbol{v}")
