@@ -40,10 +40,10 @@ def front_box(front: Expression | None) -> Box:
 
 def matrix_box(matrix: Matrix, *, tight: bool = False) -> Box:
     """Return the matrix in square brackets; `tight` puts its columns nearer together."""
-    cells = [[formula(entry, Style.TEXT) for entry in row] for row in matrix.rows]
+    cells = [[_cell(entry) for entry in row] for row in matrix.rows]
     tall = any(cell.height for row in cells for cell in row)
     taller = any(cell.height > 1 or r"\left" in cell.latex for row in cells for cell in row)
-    inside = (r" \\[7pt] " if taller else r" \\[3pt] " if tall else r" \\ ").join(
+    inside = (r" \\[9pt] " if taller else r" \\[3pt] " if tall else r" \\ ").join(
         " & ".join(cell.latex for cell in row) for row in cells
     )
     widths = [max(cell.width for cell in column) for column in zip(*cells, strict=True)]
@@ -55,10 +55,29 @@ def matrix_box(matrix: Matrix, *, tight: bool = False) -> Box:
     return Box(front.latex + latex, front.width + sum(widths) + gaps + BRACKETS, 3)
 
 
+def _cell(entry: Expression) -> Box:
+    """A fraction of numbers is set small; one of functions would be too small to read."""
+    if not _has_function_fraction(entry):
+        return formula(entry, Style.TEXT)
+    box = formula(entry, Style.DISPLAY)
+    return Box(rf"\displaystyle {box.latex}", box.width, box.height)
+
+
+def _has_function_fraction(expression: Expression) -> bool:
+    match expression:
+        case Quotient(above, _):
+            return not isinstance(above, Number)
+        case Negation(operand):
+            return _has_function_fraction(operand)
+        case Sum(parts) | Product(parts):
+            return any(map(_has_function_fraction, parts))
+    return False
+
+
 def matrix_height(matrix: Matrix) -> float:
     """Return how much of a page's height the matrix takes, in em."""
-    tall = (any(formula(entry, Style.TEXT).height for entry in row) for row in matrix.rows)
-    return sum(2.5 if row else 1.6 for row in tall)
+    heights = (max(_cell(entry).height for entry in row) for row in matrix.rows)
+    return sum(3.3 if height > 1 else 2.5 if height else 1.6 for height in heights)
 
 
 def with_front(matrix: Matrix) -> Matrix:
