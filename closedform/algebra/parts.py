@@ -103,8 +103,8 @@ def _root_of_first(evaluate: Callable[[], acb], parts: Sequence[Callable[[], lis
         bits *= 2
 
 
-def _gaussian_ball(coefficients: Sequence[object]) -> Callable[[], list[acb]]:
-    pairs = [(rational(c.x), rational(c.y)) for c in coefficients]  # type: ignore[attr-defined]
+def _gaussian_ball(coefficients: Sequence[Scalar]) -> Callable[[], list[acb]]:
+    pairs = [(rational(c.x), rational(c.y)) for c in coefficients]
 
     def balls() -> list[acb]:
         return [

@@ -7,7 +7,6 @@ import re
 from closedform.derivation.step import Side, Statement
 from closedform.document.display import Display, displayed, fits
 from closedform.document.symbols import side_box
-from closedform.notation.expression import Expression
 from closedform.notation.latex.escape import escaped
 from closedform.notation.latex.names import name_box
 
@@ -16,7 +15,6 @@ __all__ = [
     "cell",
     "decimal",
     "displayed",
-    "expression_latex",
     "fits",
     "inline",
     "mixed",
@@ -32,11 +30,6 @@ COMPLEX = re.compile(
 DECIMAL = re.compile(
     r"(?P<sign>[-+\u2212]?)(?P<whole>[0-9]+)(?P<part>(\.[0-9]+)?)([eE](?P<power>[-+]?[0-9]+))?"
 )
-
-
-def expression_latex(expression: Expression) -> str:
-    """Return a formula as LaTeX for a display, without the dollar signs."""
-    return side_box(expression).latex
 
 
 def side_latex(side: Side) -> str:

@@ -1,6 +1,5 @@
 from __future__ import annotations
 
-import os
 import pickle
 from pathlib import Path
 
@@ -9,6 +8,7 @@ import pytest
 from closedform.document import files
 from closedform.document.files import CannotWriteError, write_whole
 from closedform.errors import InputError
+from tests.privileges import as_a_usual_user, folder_open_to_all
 
 
 def test_the_text_is_there_and_nothing_else(tmp_path: Path) -> None:
@@ -45,14 +45,13 @@ def test_a_file_is_no_folder(tmp_path: Path) -> None:
     assert str(tmp_path / "a" / "b.tex") in str(caught.value)
 
 
-@pytest.mark.skipif(os.geteuid() == 0, reason="root may write anywhere")
-def test_a_folder_without_the_right_to_write_is_named(tmp_path: Path) -> None:
-    tmp_path.chmod(0o500)
-    try:
-        with pytest.raises(CannotWriteError, match="permission denied"):
-            write_whole(tmp_path / "a.tex", "x")
-    finally:
-        tmp_path.chmod(0o700)
+def test_a_folder_without_the_right_to_write_is_named() -> None:
+    with folder_open_to_all() as folder:
+        folder.chmod(0o555)
+        with as_a_usual_user(), pytest.raises(CannotWriteError, match="permission denied"):
+            write_whole(folder / "a.tex", "x")
+        folder.chmod(0o755)
+        assert not list(folder.iterdir())
 
 
 @pytest.mark.parametrize("stage", ["fsync", "replace"])

@@ -2,7 +2,7 @@ from __future__ import annotations
 
 import pytest
 
-from closedform.document.latex import cell, decimal, expression_latex, inline, mixed, side_latex
+from closedform.document.latex import cell, decimal, inline, mixed, side_latex
 from closedform.notation.expression import Name
 from tests.document.making import A, T, X, add, q, says
 
@@ -32,7 +32,7 @@ def test_mathematics_in_a_line() -> None:
     assert inline(says("", q("a"), (A, X))) == r"$a = \boldsymbol{A}\boldsymbol{x}$"
     assert inline(add("a", 1)) == "$a + 1$"
     assert side_latex(A) == r"\boldsymbol{A}"
-    assert expression_latex(T) == "t"
+    assert side_latex(T) == "t"
 
 
 def test_cells_take_text_and_mathematics() -> None:
