@@ -1,0 +1,219 @@
+"""The field Q(x_1, …, x_k) of rational functions of parameters.
+
+Elements are SymPy's `FracElement`s: a numerator and a denominator without common factor.
+Equality is equality of functions; where a function is defined and which sign it has is
+asked in ``closedform.algebra.domain``.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+from fractions import Fraction
+from functools import cached_property, reduce
+from math import gcd, lcm
+from operator import mul
+from typing import Any
+
+from flint import arb, fmpq
+from sympy import Symbol
+from sympy.polys.domains import QQ
+
+from closedform.algebra.field import BaseField, Scalar, rational
+from closedform.algebra.surds import SurdSum
+
+__all__ = ["Factored", "ParameterField", "ParameterPolynomial"]
+
+ParameterPolynomial = Any
+"""A polynomial in the parameters with rational coefficients (SymPy's PolyElement)."""
+
+
+@dataclass(frozen=True)
+class Factored:
+    """content · product of factor^exponent, an element taken apart over Q.
+
+    The factors are irreducible, with whole coefficients without common factor and a
+    positive leading coefficient; the exponents are integers other than 0, negative ones
+    those of the denominator.
+    """
+
+    content: Fraction
+    factors: tuple[tuple[ParameterPolynomial, int], ...]
+
+
+@dataclass(frozen=True)
+class ParameterField(BaseField):
+    """Q(parameters); the parameters are given by their names, in the order of printing."""
+
+    parameters: tuple[str, ...] = ()
+
+    @cached_property
+    def domain(self) -> Any:
+        """The SymPy domain whose elements are the scalars of this field."""
+        return QQ.frac_field(*map(Symbol, self.parameters))
+
+    @cached_property
+    def _gens(self) -> dict[str, Scalar]:
+        return dict(zip(self.parameters, self.domain.gens, strict=True))
+
+    def symbol(self, name: str) -> Scalar:
+        """Return a parameter as an element.  Raises KeyError for a name that is none."""
+        return self._gens[name]
+
+    def scalar(self, value: SurdSum | Fraction | int) -> Scalar:
+        """Return a rational number as an element.  Raises KeyError for a square root."""
+        if isinstance(value, SurdSum):
+            if not value.is_rational:
+                raise KeyError(value.terms[-1][0])
+            value = value.as_fraction()
+        value = Fraction(value)
+        return self.domain.convert(QQ(value.numerator, value.denominator))
+
+    def constant(self, element: Scalar) -> Fraction | None:
+        """Return an element that is a rational number, or None."""
+        if not element:
+            return Fraction(0)
+        if not (element.numer.is_ground and element.denom.is_ground):
+            return None
+        return rational(element.numer.LC) / rational(element.denom.LC)
+
+    def surds(self, element: Scalar) -> SurdSum:
+        """Return an element without parameters as a number.  Raises ValueError for others."""
+        value = self.constant(element)
+        if value is None:
+            raise ValueError(f"{element} is no number")
+        return SurdSum.rational(value)
+
+    def sign(self, element: Scalar) -> int:
+        """Return the sign of an element without parameters.  Raises ValueError for others."""
+        value = self.surds(element).as_fraction()
+        return (value > 0) - (value < 0)
+
+    def names_in(self, element: Scalar) -> frozenset[str]:
+        """Return the parameters that occur in an element."""
+        found = set()
+        for polynomial in (element.numer, element.denom):
+            for monomial in polynomial.itermonoms():
+                found |= {n for n, e in zip(self.parameters, monomial, strict=True) if e}
+        return frozenset(found)
+
+    def of_polynomial(self, polynomial: ParameterPolynomial) -> Scalar:
+        """Return a polynomial in the parameters as an element."""
+        return self.domain.field(polynomial)
+
+    def factored(self, element: Scalar) -> Factored:
+        """Return an element that is not zero, taken apart into irreducible factors over Q.
+
+        The factors come in the order of the parameters in them, simple ones first, which
+        does not hang on how the element was found.
+        """
+        above, below = _factors(element.numer), _factors(element.denom)
+        factors = [(f, e) for f, e in above.factors] + [(f, -e) for f, e in below.factors]
+        factors.sort(key=lambda pair: _order(pair[0]))
+        return Factored(above.content / below.content, tuple(factors))
+
+    def product_of(self, parts: Factored) -> Scalar:
+        """Return the element that was taken apart."""
+        powers = [self.of_polynomial(f) ** e for f, e in parts.factors]
+        return reduce(mul, powers, self.scalar(parts.content))
+
+    def substituted(self, element: Scalar, values: Mapping[str, Scalar]) -> Scalar:
+        """Return the element with elements in the place of parameters, all at once.
+
+        Raises ZeroDivisionError where its denominator vanishes there.
+        """
+        if not values or not self.names_in(element) & set(values):
+            return element
+        below = self._composed(element.denom, values)
+        if not below:
+            raise ZeroDivisionError(str(element))
+        return self._composed(element.numer, values) / below
+
+    def _composed(self, polynomial: ParameterPolynomial, values: Mapping[str, Scalar]) -> Scalar:
+        bases = [values.get(name, self._gens[name]) for name in self.parameters]
+        total = self.domain.zero
+        for monomial, coefficient in polynomial.iterterms():
+            term = self.domain.convert(coefficient)
+            for base, exponent in zip(bases, monomial, strict=True):
+                if exponent:
+                    term *= base**exponent
+            total += term
+        return total
+
+    def into(self, wider: ParameterField, element: Scalar) -> Scalar:
+        """Return an element as one of a field that has these parameters and more."""
+        return wider.domain.convert(element, self.domain)
+
+    def derivative(self, element: Scalar, name: str) -> Scalar:
+        """Return the partial derivative with respect to a parameter."""
+        return element.diff(self._gens[name])
+
+    def enclose_at(self, element: Scalar, values: Mapping[str, arb]) -> arb:
+        """Return a ball for the element at values of its parameters; not finite at a pole."""
+        below = self._enclosed(element.denom, values)
+        return self._enclosed(element.numer, values) / below
+
+    def _enclosed(self, polynomial: ParameterPolynomial, values: Mapping[str, arb]) -> arb:
+        total = arb(0)
+        for monomial, coefficient in polynomial.iterterms():
+            value = rational(coefficient)
+            term = arb(fmpq(value.numerator, value.denominator))
+            for name, exponent in zip(self.parameters, monomial, strict=True):
+                if exponent:
+                    term *= values[name] ** exponent
+            total += term
+        return total
+
+    def exact_at(self, element: Scalar, values: Mapping[str, SurdSum]) -> SurdSum:
+        """Return the exact value at values of the parameters.  Raises ZeroDivisionError."""
+        below = self._exact(element.denom, values)
+        return self._exact(element.numer, values) / below
+
+    def _exact(self, polynomial: ParameterPolynomial, values: Mapping[str, SurdSum]) -> SurdSum:
+        total = SurdSum(())
+        for monomial, coefficient in polynomial.iterterms():
+            term = SurdSum.rational(rational(coefficient))
+            for name, exponent in zip(self.parameters, monomial, strict=True):
+                if exponent:
+                    term = term * values[name].power(exponent)
+            total = total + term
+        return total
+
+    def rational_parts(self, element: Scalar) -> list[tuple[int, int, int]]:
+        """Return (numerator, denominator, radicand) for every coefficient of an element."""
+        if not element:
+            return []
+        terms = [*element.numer.coeffs(), *(element.denom.coeffs() if element.denom != 1 else ())]
+        return [(int(c.numerator), int(c.denominator), 1) for c in terms]
+
+
+def _factors(polynomial: ParameterPolynomial) -> Factored:
+    content, factors = polynomial.factor_list()
+    scale = rational(content)
+    made = []
+    for factor, exponent in factors:
+        whole, size = _whole(factor)
+        scale *= size**exponent
+        made.append((whole, exponent))
+    return Factored(scale, tuple(made))
+
+
+def _whole(polynomial: ParameterPolynomial) -> tuple[ParameterPolynomial, Fraction]:
+    """Return a polynomial with whole coefficients and a leading one > 0, and what it lost."""
+    numbers = [rational(c) for c in polynomial.coeffs()]
+    below = lcm(*(n.denominator for n in numbers))
+    size = Fraction(gcd(*(int(n * below) for n in numbers)), below)
+    if rational(polynomial.LC) < 0:
+        size = -size
+    return polynomial.quo_ground(QQ(size.numerator, size.denominator)), size
+
+
+def _order(polynomial: ParameterPolynomial) -> tuple[object, ...]:
+    monomials: Iterable[tuple[int, ...]] = polynomial.monoms()
+    degrees = [sum(m) for m in monomials]
+    return (
+        max(degrees),
+        len(degrees),
+        [tuple(-e for e in m) for m in polynomial.monoms()],
+        [str(c) for c in polynomial.coeffs()],
+    )

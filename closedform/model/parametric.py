@@ -1,0 +1,110 @@
+"""A model with parameters: what the user stated, over the field of rational functions."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Literal
+
+from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.field import Scalar
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.surds import SurdSum
+from closedform.notation.expression import Expression
+
+__all__ = [
+    "Assumption",
+    "Condition",
+    "Definition",
+    "Parameter",
+    "ParametricModel",
+    "ParametricOutput",
+    "ValueSet",
+]
+
+Assumption = Literal["positive", "nonnegative", "negative", "nonzero", "real"]
+
+
+@dataclass(frozen=True, slots=True)
+class Parameter:
+    """A quantity that the model leaves open; `value` is one that it may be given at the end."""
+
+    name: str
+    assume: Assumption
+    value: SurdSum | None = None
+    unit: str = ""
+    meaning: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Condition:
+    """A comparison as the user wrote it: `left` `relation` `right`, one of < <= > >= != =.
+
+    `comparison` says the same of the field's parameters, against 0.
+    """
+
+    left: Expression
+    relation: str
+    right: Expression
+    comparison: Comparison
+
+
+@dataclass(frozen=True, slots=True)
+class Definition:
+    """A name for a formula in the parameters: `formula` as written, `value` in the field.
+
+    It is either a parameter that is re-stated by others ([substitute]), or an abbreviation
+    of the user's for the results ([abbreviations]).
+    """
+
+    name: str
+    formula: Expression
+    value: Scalar
+
+
+@dataclass(frozen=True, slots=True)
+class ParametricOutput:
+    """A named linear combination of the states; `weights` has one element per state."""
+
+    name: str
+    weights: tuple[Scalar, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class ValueSet:
+    """A row of the comparison table: a value for every parameter, by name."""
+
+    label: str
+    values: tuple[tuple[str, SurdSum], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class ParametricModel:
+    """The system x' = A x, x(0) = x0 over Q(parameters), with the values these may take.
+
+    Shapes:  `matrix` is n rows of n entries, `initial` has n, n = len(states) >= 1.
+    Units:   as the user states them; nothing is converted.
+    Exact:   entries are elements of `field`, whose parameters are those in `parameters`.
+
+    `parameters` are those in which the solution is stated, in the order of the file;
+    `restated` are parameters of the file that [substitute] expresses by them, put in
+    already.  `domain` holds the assumptions, then `conditions`.  `values` is the value set
+    of the file where every parameter has a value, `value_sets` the rows of [[values]].
+    """
+
+    name: str
+    title: str
+    states: tuple[str, ...]
+    field: ParameterField
+    parameters: tuple[Parameter, ...]
+    domain: ParameterDomain
+    matrix: tuple[tuple[Scalar, ...], ...]
+    initial: tuple[Scalar, ...]
+    outputs: tuple[ParametricOutput, ...] = ()
+    conditions: tuple[Condition, ...] = ()
+    restated: tuple[Definition, ...] = ()
+    abbreviations: tuple[Definition, ...] = ()
+    values: ValueSet | None = None
+    value_sets: tuple[ValueSet, ...] = ()
+    times: tuple[SurdSum, ...] = ()
+    time: str = "t"
+    summary: str = ""
