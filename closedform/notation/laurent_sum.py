@@ -1,0 +1,305 @@
+"""Sums of monomials in the parameters, written with few operations.
+
+A Laurent polynomial is a sum of monomials with exponents of either sign.  It may be written
+term by term, with a common factor or denominator in front, grouped by a parameter or a number
+that several terms share (W. G. Horner's scheme), factored, or as a square and a rest.  Groups
+are written in the same way.  Long sums are tried in few forms only.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Iterator, Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+from functools import lru_cache
+from itertools import chain, combinations
+from math import gcd, isqrt, lcm
+
+from closedform.algebra.field import rational
+from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
+from closedform.notation.expression import (
+    ONE,
+    Call,
+    Expression,
+    Name,
+    Negation,
+    Number,
+    Power,
+    Product,
+    Quotient,
+    Sum,
+    operations,
+    power_of,
+    product,
+)
+from closedform.notation.terms import opened, sum_of
+
+__all__ = [
+    "Laurent",
+    "Weight",
+    "laurent_of",
+    "monomial_weight",
+    "power_of_weight",
+    "product_of_weights",
+    "shortest",
+    "shortest_sum",
+    "written",
+]
+
+Laurent = tuple[tuple[tuple[int, ...], Fraction], ...]
+"""(exponents, coefficient) of every term, coefficients not 0, in the order of printing."""
+
+FULL = 8
+"""Up to this number of terms all groupings are tried."""
+GROUPED = 40
+"""Up to this number of terms one grouping is tried at each step."""
+
+
+@dataclass(frozen=True)
+class Weight:
+    """number · above / below, the number with the sign: a value ready to take more factors."""
+
+    number: Fraction
+    above: tuple[Expression, ...] = ()
+    below: tuple[Expression, ...] = ()
+
+
+def written(
+    weight: Weight, factors: Sequence[Expression] = (), divisors: Sequence[Expression] = ()
+) -> Expression:
+    """Return weight · factors / divisors as one term, its sign outside."""
+    size = abs(weight.number)
+    above = product([Number(Fraction(size.numerator)), *weight.above, *factors])
+    below = product([Number(Fraction(size.denominator)), *weight.below, *divisors])
+    if below == ONE:
+        term = above
+    elif isinstance(above, Number) and isinstance(below, Number):
+        term = Number(above.value / below.value)
+    else:
+        term = Quotient(above, below)
+    return Negation(term) if weight.number < 0 else term
+
+
+def shortest(forms: Iterable[Weight]) -> Weight:
+    """Return the form with the fewest operations; of equals, that with the fewest brackets."""
+    return min(forms, key=lambda form: rank(written(form)))
+
+
+def rank(expression: Expression) -> tuple[int, int]:
+    """Return what decides between equal formulas: operations, then sums inside of others."""
+    shown = opened(expression)
+    return operations(shown), _sums_in(shown) - isinstance(shown, Sum)
+
+
+def _sums_in(expression: Expression) -> int:
+    match expression:
+        case Sum(terms):
+            return 1 + sum(map(_sums_in, terms))
+        case Product(factors):
+            return sum(map(_sums_in, factors))
+        case Negation(operand) | Call(_, operand):
+            return _sums_in(operand)
+        case Quotient(first, second) | Power(first, second):
+            return _sums_in(first) + _sums_in(second)
+    return 0
+
+
+def product_of_weights(weights: Iterable[Weight]) -> Weight:
+    """Return the product; single parameters come before sums, else the order is kept."""
+    number = Fraction(1)
+    above: list[Expression] = []
+    below: list[Expression] = []
+    for weight in weights:
+        number *= weight.number
+        above += weight.above
+        below += weight.below
+    return Weight(number, tuple(sorted(above, key=_is_long)), tuple(sorted(below, key=_is_long)))
+
+
+def power_of_weight(weight: Weight, exponent: int) -> Weight:
+    """Return a weight to a positive integer power."""
+    raised = [tuple(_raised(f, exponent) for f in fs) for fs in (weight.above, weight.below)]
+    return Weight(weight.number**exponent, *raised)
+
+
+def _raised(factor: Expression, exponent: int) -> Expression:
+    if isinstance(factor, Power) and isinstance(factor.exponent, Number):
+        return Power(factor.base, Number(factor.exponent.value * exponent))
+    return power_of(factor, exponent)
+
+
+def _is_long(factor: Expression) -> bool:
+    base = factor.base if isinstance(factor, Power) else factor
+    return not isinstance(base, Name)
+
+
+@lru_cache(maxsize=4096)
+def laurent_of(polynomial: ParameterPolynomial) -> Laurent:
+    """Return the terms of a polynomial in the order of printing."""
+    return _ordered((monomial, rational(c)) for monomial, c in polynomial.iterterms())
+
+
+def _ordered(terms: Iterable[tuple[tuple[int, ...], Fraction]]) -> Laurent:
+    """Simple terms first; of equally simple ones, those of earlier parameters."""
+    return tuple(
+        sorted(
+            ((m, c) for m, c in terms if c),
+            key=lambda term: (sum(map(abs, term[0])), [-e for e in term[0]]),
+        )
+    )
+
+
+def monomial_weight(field: ParameterField, exponents: Sequence[int], number: Fraction) -> Weight:
+    """Return number · product of parameter^exponent."""
+    pairs = list(zip(field.parameters, exponents, strict=True))
+    above = tuple(power_of(Name(n), e) for n, e in pairs if e > 0)
+    return Weight(number, above, tuple(power_of(Name(n), -e) for n, e in pairs if e < 0))
+
+
+@lru_cache(maxsize=65536)
+def shortest_sum(field: ParameterField, terms: Laurent) -> Weight:
+    """Return a sum of at least one term in its shortest form."""
+    if len(terms) == 1:
+        return monomial_weight(field, *terms[0])
+    flat = _sum_of_groups(field, [(term,) for term in terms])
+    exponents, number = _shared(terms)
+    if any(exponents) or number != 1:
+        return shortest([_pulled(field, terms, exponents, number), flat])
+    forms = [*_fractions(field, terms), *_products(field, terms), *_squares(field, terms)]
+    forms += [_sum_of_groups(field, groups) for groups in _groupings(terms)]
+    return shortest([flat, *forms])
+
+
+def _sum_of_groups(field: ParameterField, groups: Sequence[Laurent]) -> Weight:
+    return _as_weight(sum_of([written(shortest_sum(field, group)) for group in groups]))
+
+
+def _as_weight(total: Expression) -> Weight:
+    if isinstance(total, Negation):
+        return Weight(Fraction(-1), (total.operand,))
+    return Weight(Fraction(1), (total,))
+
+
+def _shared(terms: Laurent) -> tuple[tuple[int, ...], Fraction]:
+    """Return the monomial and the number that all terms share, above or below."""
+    shared = []
+    for column in zip(*(m for m, _ in terms), strict=True):
+        low, high = min(column), max(column)
+        shared.append(low if low > 0 else min(0, high))
+    above = gcd(*(c.numerator for _, c in terms))
+    below = gcd(*(c.denominator for _, c in terms))
+    return tuple(shared), Fraction(above, below)
+
+
+def _pulled(
+    field: ParameterField, terms: Laurent, exponents: Sequence[int], number: Fraction
+) -> Weight:
+    """The factor times what is left of the terms without it."""
+    left = _ordered(
+        (tuple(e - d for e, d in zip(m, exponents, strict=True)), c / number) for m, c in terms
+    )
+    front = monomial_weight(field, exponents, number)
+    return product_of_weights([front, shortest_sum(field, left)])
+
+
+def _fractions(field: ParameterField, terms: Laurent) -> Iterator[Weight]:
+    """Common denominators of some of the parameters that stand below, and of the number."""
+    lows = [min(column) for column in zip(*(m for m, _ in terms), strict=True)]
+    number = Fraction(1, lcm(*(c.denominator for _, c in terms)))
+    below = [i for i, low in enumerate(lows) if low < 0] + ([-1] if number != 1 else [])
+    sizes = range(1, len(below) + 1) if len(below) <= 3 and len(terms) <= FULL else [len(below)]
+    for chosen in chain.from_iterable(combinations(below, size) for size in sizes if below):
+        exponents = tuple(low if i in chosen else 0 for i, low in enumerate(lows))
+        yield _pulled(field, terms, exponents, number if -1 in chosen else Fraction(1))
+
+
+def _groupings(terms: Laurent) -> list[list[Laurent]]:
+    """Ways to set those terms apart that share a parameter, or a number."""
+    if len(terms) > GROUPED:
+        return []
+    found: dict[tuple[int, ...], None] = {}
+    for column in zip(*(m for m, _ in terms), strict=True):
+        for sign in (1, -1):
+            found[tuple(i for i, e in enumerate(column) if e * sign > 0)] = None
+    for size in dict.fromkeys(abs(c) for _, c in terms if abs(c) != 1):
+        found[tuple(i for i, (_, c) in enumerate(terms) if abs(c) == size)] = None
+    chosen = [places for places in found if 1 < len(places) < len(terms)]
+    if len(terms) > FULL:
+        chosen = sorted(chosen, key=len, reverse=True)[:1]
+    groupings = []
+    for places in chosen:
+        inside = tuple(terms[i] for i in places)
+        outside = tuple(term for i, term in enumerate(terms) if i not in places)
+        groupings.append([inside, outside] if 0 in places else [outside, inside])
+    return groupings
+
+
+def _products(field: ParameterField, terms: Laurent) -> Iterator[Weight]:
+    """The factored form of a polynomial with whole coefficients, if it has factors."""
+    if len(terms) > FULL or _is_irreducible(terms):
+        return
+    if any(e < 0 for m, _ in terms for e in m) or any(c.denominator != 1 for _, c in terms):
+        return
+    parts = field.factored(_element(field, terms))
+    if len(parts.factors) > 1 or parts.factors[0][1] > 1:
+        weights = [power_of_weight(shortest_sum(field, laurent_of(f)), e) for f, e in parts.factors]
+        yield product_of_weights([Weight(parts.content), *weights])
+
+
+def _element(field: ParameterField, terms: Laurent) -> ParameterPolynomial:
+    total = field.scalar(0)
+    for exponents, coefficient in terms:
+        term = field.scalar(coefficient)
+        for name, exponent in zip(field.parameters, exponents, strict=True):
+            if exponent:
+                term *= field.symbol(name) ** exponent
+        total += term
+    return total
+
+
+def _is_irreducible(terms: Laurent) -> bool:
+    """Whether a parameter occurs in one term only, once: with nothing shared, no factors."""
+    columns = zip(*(m for m, _ in terms), strict=True)
+    return any(sorted(map(abs, column))[-2:] == [0, 1] for column in columns)
+
+
+def _squares(field: ParameterField, terms: Laurent) -> Iterator[Weight]:
+    """The square completed in one parameter: (r x + b)^2 and a short rest."""
+    if not 4 <= len(terms) <= FULL:
+        return
+    for place in range(len(field.parameters)):
+        by_degree = {d: [t for t in terms if t[0][place] == d] for d in (1, 2)}
+        if len(by_degree[2]) != 1 or not by_degree[1] or any(t[0][place] > 2 for t in terms):
+            continue
+        ((exponents, size),) = by_degree[2]
+        root = _root(abs(size))
+        if root is None or any(e % 2 for e in exponents):
+            continue
+        sign = 1 if size > 0 else -1
+        half = tuple(e // 2 for e in exponents)
+        inner = [(half, root)] + [
+            (tuple(e - h for e, h in zip(m, half, strict=True)), c * sign / (2 * root))
+            for m, c in by_degree[1]
+        ]
+        rest = _without_square(terms, inner, sign)
+        if len(rest) < len(terms) - 2:
+            square = written(power_of_weight(shortest_sum(field, _ordered(inner)), 2))
+            parts = [square if sign > 0 else Negation(square)]
+            parts += [written(shortest_sum(field, rest))] if rest else []
+            yield _as_weight(sum_of(parts))
+
+
+def _without_square(
+    terms: Laurent, inner: Sequence[tuple[tuple[int, ...], Fraction]], sign: int
+) -> Laurent:
+    left = dict(terms)
+    for first, c in inner:
+        for second, d in inner:
+            monomial = tuple(e + f for e, f in zip(first, second, strict=True))
+            left[monomial] = left.get(monomial, Fraction(0)) - sign * c * d
+    return _ordered(left.items())
+
+
+def _root(value: Fraction) -> Fraction | None:
+    root = Fraction(isqrt(value.numerator), isqrt(value.denominator))
+    return root if root * root == value else None

@@ -1,0 +1,1 @@
+"""Models with parameters solved for every value of the parameters."""
