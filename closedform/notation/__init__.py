@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from closedform.notation.evaluation import enclose
     from closedform.notation.exact import exact_value
     from closedform.notation.linear import linear_combination
+    from closedform.notation.rational import rational_combination, rational_value
     from closedform.notation.reader import read_formula
     from closedform.notation.terms import surd_formula
 
@@ -23,6 +24,8 @@ __all__ = [
     "exact_value",
     "linear_combination",
     "plain",
+    "rational_combination",
+    "rational_value",
     "read_formula",
     "surd_formula",
 ]
@@ -31,6 +34,8 @@ _HOMES = {
     "enclose": "closedform.notation.evaluation",
     "exact_value": "closedform.notation.exact",
     "linear_combination": "closedform.notation.linear",
+    "rational_combination": "closedform.notation.rational",
+    "rational_value": "closedform.notation.rational",
     "read_formula": "closedform.notation.reader",
     "surd_formula": "closedform.notation.terms",
 }

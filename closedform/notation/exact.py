@@ -6,6 +6,7 @@ from fractions import Fraction
 
 from closedform.algebra.surds import LARGEST_RADICAND, SurdSum
 from closedform.errors import Place
+from closedform.notation.arithmetic import Arithmetic
 from closedform.notation.errors import (
     DivisionByZeroError,
     ExponentError,
@@ -15,20 +16,11 @@ from closedform.notation.errors import (
     NotANumberError,
     SizeError,
 )
-from closedform.notation.expression import (
-    Call,
-    Expression,
-    Name,
-    Negation,
-    Number,
-    Power,
-    Product,
-    Quotient,
-    Sum,
-)
+from closedform.notation.expression import Call, Expression
 from closedform.notation.plain import plain
+from closedform.notation.terms import surd_formula
 
-__all__ = ["exact_value"]
+__all__ = ["MOST_BITS", "NUMBERS", "bounded", "exact_value"]
 
 MOST_BITS = 7_000
 """Bits of a numerator or a denominator; about 2 000 decimal digits."""
@@ -42,7 +34,6 @@ SIZE_LIMIT = (
     f"{MOST_TERMS} different roots, denominators up to {MOST_TERMS_BELOW}, and roots are taken "
     f"of integers up to 10^{len(str(LARGEST_RADICAND)) - 1}"
 )
-HALF = Fraction(1, 2)
 
 
 def exact_value(expression: Expression, place: Place) -> SurdSum:
@@ -55,47 +46,11 @@ def exact_value(expression: Expression, place: Place) -> SurdSum:
     Raises:  DivisionByZeroError, NegativeRootError, NestedRootError, InexactFunctionError,
              ExponentError, NotANumberError, SizeError; each quotes the part concerned.
 
+    >>> from closedform.notation.expression import Number, Power
     >>> exact_value(Power(Number(Fraction(8)), Number(Fraction(1, 2))), Place())
     SurdSum(terms=((2, Fraction(2, 1)),))
     """
-    match expression:
-        case Number(value):
-            return SurdSum.rational(value)
-        case Name(text):
-            raise NotANumberError(place, text)
-        case Negation(operand):
-            return -exact_value(operand, place)
-        case Sum(terms):
-            total = SurdSum.rational(0)
-            for term in terms:
-                total = bounded(total + exact_value(term, place), expression, place)
-            return total
-        case Product(factors):
-            product = SurdSum.rational(1)
-            for factor in factors:
-                product = bounded(product * exact_value(factor, place), expression, place)
-            return product
-        case Quotient(above, below):
-            inverse = inverse_of(exact_value(below, place), expression, place)
-            return bounded(exact_value(above, place) * inverse, expression, place)
-        case Power():
-            return _power(expression, place)
-        case Call("sqrt", argument):
-            return _root(exact_value(argument, place), expression, place)
-        case Call():
-            raise InexactFunctionError(place, plain(expression))
-
-
-def inverse_of(value: SurdSum, whole: Expression, place: Place) -> SurdSum:
-    """Return 1/value exactly; `whole` is what an error quotes.
-
-    Raises:  DivisionByZeroError, SizeError.
-    """
-    if value.is_zero:
-        raise DivisionByZeroError(place, plain(whole))
-    if len(value.terms) > MOST_TERMS_BELOW:
-        raise SizeError(place, plain(whole), SIZE_LIMIT)
-    return bounded(value.inverse(), whole, place)
+    return NUMBERS.value(expression, place)
 
 
 def bounded(value: SurdSum, whole: Expression, place: Place) -> SurdSum:
@@ -103,6 +58,57 @@ def bounded(value: SurdSum, whole: Expression, place: Place) -> SurdSum:
     if len(value.terms) > MOST_TERMS or _bits(value) > MOST_BITS:
         raise SizeError(place, plain(whole), SIZE_LIMIT)
     return value
+
+
+class _Numbers(Arithmetic[SurdSum]):
+    """Sums of rational multiples of square roots."""
+
+    def number(self, value: Fraction) -> SurdSum:
+        return SurdSum.rational(value)
+
+    def named(self, name: str, place: Place) -> SurdSum:
+        raise NotANumberError(place, name)
+
+    def negated(self, value: SurdSum) -> SurdSum:
+        return -value
+
+    def added(self, one: SurdSum, other: SurdSum, whole: Expression, place: Place) -> SurdSum:
+        return bounded(one + other, whole, place)
+
+    def multiplied(self, one: SurdSum, other: SurdSum, whole: Expression, place: Place) -> SurdSum:
+        return bounded(one * other, whole, place)
+
+    def inverted(self, value: SurdSum, whole: Expression, place: Place) -> SurdSum:
+        if value.is_zero:
+            raise DivisionByZeroError(place, plain(whole))
+        if len(value.terms) > MOST_TERMS_BELOW:
+            raise SizeError(place, plain(whole), SIZE_LIMIT)
+        return bounded(value.inverse(), whole, place)
+
+    def called(self, call: Call, place: Place) -> SurdSum:
+        if call.function != "sqrt":
+            raise InexactFunctionError(place, plain(call))
+        return self.root(self.value(call.argument, place), call, place)
+
+    def root(self, value: SurdSum, whole: Expression, place: Place) -> SurdSum:
+        if not value.is_rational:
+            nested = isinstance(whole, Call)
+            raise (NestedRootError if nested else ExponentError)(place, plain(whole))
+        if value.as_fraction() < 0:
+            raise NegativeRootError(place, plain(whole))
+        try:
+            return value.sqrt()
+        except ValueError:
+            raise SizeError(place, plain(whole), SIZE_LIMIT) from None
+
+    def fraction(self, value: SurdSum) -> Fraction | None:
+        return value.as_fraction() if value.is_rational else None
+
+    def text(self, value: SurdSum) -> str:
+        return plain(surd_formula(value))
+
+
+NUMBERS = _Numbers()
 
 
 def _bits(value: SurdSum) -> int:
@@ -114,42 +120,3 @@ def _bits(value: SurdSum) -> int:
         ),
         default=0,
     )
-
-
-def _power(power: Power, place: Place) -> SurdSum:
-    base, exponent = exact_value(power.base, place), exact_value(power.exponent, place)
-    if not exponent.is_rational:
-        raise ExponentError(place, plain(power))
-    times = exponent.as_fraction()
-    if times.denominator == HALF.denominator and base.is_rational:
-        base, times = _root(base, power, place), times * 2
-    if times.denominator != 1:
-        raise ExponentError(place, plain(power))
-    if times < 0:
-        base, times = inverse_of(base, power, place), -times
-    return _integer_power(base, int(times), power, place)
-
-
-def _integer_power(base: SurdSum, times: int, power: Power, place: Place) -> SurdSum:
-    """Return base^times for times >= 0 by squaring.
-
-    Every value but 0, 1 and -1 grows with each squaring, so `bounded` soon stops a power
-    that would become too large.
-    """
-    result = SurdSum.rational(1)
-    for bit in bin(times)[2:]:
-        result = bounded(result * result, power, place)
-        if bit == "1":
-            result = bounded(result * base, power, place)
-    return result
-
-
-def _root(value: SurdSum, whole: Expression, place: Place) -> SurdSum:
-    if not value.is_rational:
-        raise NestedRootError(place, plain(whole))
-    if value.as_fraction() < 0:
-        raise NegativeRootError(place, plain(whole))
-    try:
-        return value.sqrt()
-    except ValueError:
-        raise SizeError(place, plain(whole), SIZE_LIMIT) from None

@@ -26,6 +26,7 @@ __all__ = [
     "Sum",
     "factors_of",
     "is_expression",
+    "names_in",
     "number",
     "operations",
     "power_of",
@@ -102,6 +103,25 @@ Expression = Number | Name | Negation | Sum | Product | Quotient | Power | Call
 def is_expression(item: object) -> TypeGuard[Expression]:
     """Whether something is a node of a formula."""
     return isinstance(item, Expression)
+
+
+def names_in(expression: Expression) -> frozenset[str]:
+    """Return every name that occurs in a formula."""
+    found: set[str] = set()
+    pending: list[Expression] = [expression]
+    while pending:
+        match pending.pop():
+            case Name(text):
+                found.add(text)
+            case Negation(inside) | Call(_, inside):
+                pending.append(inside)
+            case Sum(several) | Product(several):
+                pending += several
+            case Quotient(left, right) | Power(left, right):
+                pending += (left, right)
+            case Number():
+                pass
+    return frozenset(found)
 
 
 def number(value: Fraction | int) -> Expression:

@@ -3,35 +3,35 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from typing import NamedTuple
+from fractions import Fraction
+from typing import Generic, NamedTuple, TypeVar
 
 from closedform.algebra.surds import SurdSum
 from closedform.errors import Place
+from closedform.notation.arithmetic import Arithmetic
 from closedform.notation.errors import ConstantTermError, NonlinearTermError
-from closedform.notation.exact import bounded, exact_value, inverse_of
+from closedform.notation.exact import NUMBERS
 from closedform.notation.expression import (
     Expression,
     Name,
     Negation,
-    Number,
-    Power,
     Product,
     Quotient,
     Sum,
+    names_in,
 )
 from closedform.notation.plain import plain
-from closedform.notation.terms import surd_formula
 
-__all__ = ["linear_combination"]
+__all__ = ["combination", "linear_combination"]
 
-ZERO, ONE = SurdSum.rational(0), SurdSum.rational(1)
+T = TypeVar("T")
 
 
-class _Linear(NamedTuple):
+class _Linear(NamedTuple, Generic[T]):
     """weights . states + constant."""
 
-    weights: Mapping[str, SurdSum]
-    constant: SurdSum
+    weights: Mapping[str, T]
+    constant: T
 
 
 def linear_combination(
@@ -42,69 +42,80 @@ def linear_combination(
     Raises:  NonlinearTermError for a term that is not a number times a state,
              ConstantTermError for a number left over, and what `exact_value` raises.
 
-    >>> half = Quotient(Sum((Name("a"), Negation(Name("b")))), Number(2))
+    >>> from closedform.notation.expression import Number
+    >>> half = Quotient(Sum((Name("a"), Negation(Name("b")))), Number(Fraction(2)))
     >>> [str(w.as_fraction()) for w in linear_combination(half, ("a", "b"), Place())]
     ['1/2', '-1/2']
     """
-    result = _linear(expression, frozenset(states), place)
-    if not result.constant.is_zero:
-        raise ConstantTermError(place, plain(surd_formula(result.constant)))
-    return tuple(result.weights.get(state, ZERO) for state in states)
+    return combination(expression, states, NUMBERS, place)
 
 
-def _linear(expression: Expression, states: frozenset[str], place: Place) -> _Linear:
-    match expression:
-        case Name(text) if text in states:
-            return _Linear({text: ONE}, ZERO)
-        case Negation(operand):
-            return _scaled(_linear(operand, states, place), -ONE, expression, place)
-        case Sum(terms):
-            return _added([_linear(term, states, place) for term in terms], expression, place)
-        case Product(factors):
-            within = [factor for factor in factors if not _is_constant(factor)]
-            if len(within) > 1:
-                raise NonlinearTermError(place, plain(expression))
-            if within:
-                number = ONE
-                for factor in factors:
-                    if factor is not within[0]:
-                        number = bounded(number * exact_value(factor, place), factor, place)
-                return _scaled(_linear(within[0], states, place), number, expression, place)
-        case Quotient(above, below) if not _is_constant(above) and _is_constant(below):
-            number = inverse_of(exact_value(below, place), expression, place)
-            return _scaled(_linear(above, states, place), number, expression, place)
-    if _is_constant(expression):
-        return _Linear({}, exact_value(expression, place))
-    raise NonlinearTermError(place, plain(expression))
+def combination(
+    expression: Expression, states: Sequence[str], arithmetic: Arithmetic[T], place: Place
+) -> tuple[T, ...]:
+    """Return the weight of each state as a value of `arithmetic`, in the order of the states.
+
+    Raises:  NonlinearTermError, ConstantTermError, and what `arithmetic` raises.
+    """
+    zero = arithmetic.number(Fraction(0))
+    result = _Walk(frozenset(states), arithmetic, place).linear(expression)
+    if result.constant != zero:
+        raise ConstantTermError(place, arithmetic.text(result.constant))
+    return tuple(result.weights.get(state, zero) for state in states)
 
 
-def _is_constant(expression: Expression) -> bool:
-    """Whether no name occurs."""
-    match expression:
-        case Number():
-            return True
-        case Name():
-            return False
-        case Negation(inside):
-            return _is_constant(inside)
-        case Sum(several) | Product(several):
-            return all(map(_is_constant, several))
-        case Quotient(left, right) | Power(left, right):
-            return _is_constant(left) and _is_constant(right)
-        case _:
-            return _is_constant(expression.argument)
+class _Walk(NamedTuple, Generic[T]):
+    """What stays the same while a formula is walked through."""
 
+    states: frozenset[str]
+    arithmetic: Arithmetic[T]
+    place: Place
 
-def _scaled(linear: _Linear, number: SurdSum, whole: Expression, place: Place) -> _Linear:
-    weights = {s: bounded(w * number, whole, place) for s, w in linear.weights.items()}
-    return _Linear(weights, bounded(linear.constant * number, whole, place))
+    def linear(self, expression: Expression) -> _Linear[T]:
+        one = self.arithmetic.number(Fraction(1))
+        match expression:
+            case Name(text) if text in self.states:
+                return _Linear({text: one}, self.arithmetic.number(Fraction(0)))
+            case Negation(operand):
+                return self._scaled(self.linear(operand), self.arithmetic.negated(one), expression)
+            case Sum(terms):
+                return self._added([self.linear(term) for term in terms], expression)
+            case Product(factors):
+                within = [factor for factor in factors if not self._is_constant(factor)]
+                if len(within) > 1:
+                    raise NonlinearTermError(self.place, plain(expression))
+                if within:
+                    weight = one
+                    for factor in factors:
+                        if factor is not within[0]:
+                            value = self.arithmetic.value(factor, self.place)
+                            weight = self._product(weight, value, factor)
+                    return self._scaled(self.linear(within[0]), weight, expression)
+            case Quotient(above, below) if not self._is_constant(above):
+                if self._is_constant(below):
+                    value = self.arithmetic.value(below, self.place)
+                    weight = self.arithmetic.inverted(value, expression, self.place)
+                    return self._scaled(self.linear(above), weight, expression)
+        if self._is_constant(expression):
+            return _Linear({}, self.arithmetic.value(expression, self.place))
+        raise NonlinearTermError(self.place, plain(expression))
 
+    def _is_constant(self, expression: Expression) -> bool:
+        return names_in(expression) <= self.arithmetic.names
 
-def _added(parts: Sequence[_Linear], whole: Expression, place: Place) -> _Linear:
-    weights: dict[str, SurdSum] = {}
-    constant = ZERO
-    for part in parts:
-        constant = bounded(constant + part.constant, whole, place)
-        for state, weight in part.weights.items():
-            weights[state] = bounded(weights.get(state, ZERO) + weight, whole, place)
-    return _Linear(weights, constant)
+    def _product(self, one: T, other: T, whole: Expression) -> T:
+        return self.arithmetic.multiplied(one, other, whole, self.place)
+
+    def _scaled(self, linear: _Linear[T], weight: T, whole: Expression) -> _Linear[T]:
+        weights = {s: self._product(w, weight, whole) for s, w in linear.weights.items()}
+        return _Linear(weights, self._product(linear.constant, weight, whole))
+
+    def _added(self, parts: Sequence[_Linear[T]], whole: Expression) -> _Linear[T]:
+        zero = constant = self.arithmetic.number(Fraction(0))
+        weights: dict[str, T] = {}
+        for part in parts:
+            constant = self.arithmetic.added(constant, part.constant, whole, self.place)
+            for state, weight in part.weights.items():
+                so_far = weights.get(state, zero)
+                weights[state] = self.arithmetic.added(so_far, weight, whole, self.place)
+        return _Linear(weights, constant)

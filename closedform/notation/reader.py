@@ -38,7 +38,7 @@ from closedform.notation.greek import ascii_name
 from closedform.notation.mistakes import MISTAKES
 from closedform.notation.plain import plain
 
-__all__ = ["LARGEST_EXPONENT", "LONGEST", "MOST_DIGITS", "read_formula"]
+__all__ = ["LARGEST_EXPONENT", "LONGEST", "MOST_DIGITS", "NOWHERE", "place_of", "read_formula"]
 
 LONGEST = 100_000
 """Characters of one formula."""
@@ -75,7 +75,7 @@ def read_formula(text: str, *, names: frozenset[str], place: Place = NOWHERE) ->
         raise _refusal(found, text, place)
     for token in tokens:
         if token.type == "NAME" and ascii_name(token) not in names:
-            raise _undeclared(token, names, _at(text, _start(token), place))
+            raise _undeclared(token, names, place_of(text, _start(token), place))
     return found
 
 
@@ -159,7 +159,7 @@ def _objection(before: str, token: Token, depth: int, names: frozenset[str]) -> 
 
 def _refusal(stop: _Stop, text: str, place: Place) -> FormulaError:
     """Return the error for the place where reading stopped."""
-    place = _at(text, stop.start, place)
+    place = place_of(text, stop.start, place)
     found = text[stop.start : stop.end]
     match stop.why:
         case ("DEPTH",):
@@ -207,8 +207,8 @@ def _start(token: Token) -> int:
     return token.start_pos or 0
 
 
-def _at(text: str, offset: int, place: Place) -> Place:
-    """Return the place of one character of the text."""
+def place_of(text: str, offset: int, place: Place) -> Place:
+    """Return the place of one character of a text that starts at `place`."""
     above = text.count("\n", 0, offset)
     start = text.rfind("\n", 0, offset) + 1
     excerpt = text[start:].split("\n", 1)[0]

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from fractions import Fraction
 
 import pytest
@@ -19,10 +20,12 @@ from closedform.notation.expression import (
     Product,
     Quotient,
     factors_of,
+    names_in,
     power_of,
     product,
 )
-from tests.notation.formulas import NUMBERS, formulas, rational_value, whole
+from closedform.notation.plain import plain
+from tests.notation.formulas import NAMES, NUMBERS, formulas, rational_value, whole
 
 A, B, C = Name("a"), Name("b"), Name("c")
 
@@ -81,3 +84,9 @@ POWERS = [
 @pytest.mark.parametrize(("exponent", "expected"), POWERS)
 def test_a_power_is_no_power_where_none_is_needed(exponent: int, expected: Expression) -> None:
     assert power_of(A, exponent) == expected
+
+
+@given(formulas())
+def test_the_names_are_those_of_the_text(expression: Expression) -> None:
+    words = set(re.findall("[a-z][a-z0-9_]*", plain(expression)))
+    assert names_in(expression) == words & NAMES
