@@ -9,28 +9,102 @@ it is never a guess.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Literal
+from fractions import Fraction
+from functools import cached_property
 
+from closedform.algebra.conditions import Conditions
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.sample import sample_points
+from closedform.algebra.sign_argument import (
+    Comparison,
+    Relation,
+    Sign,
+    SignArgument,
+    relation_values,
+)
+from closedform.algebra.signs import Facts
 
-__all__ = ["Comparison", "ParameterDomain", "Relation", "Sign"]
-
-Relation = Literal[">", ">=", "!=", "="]
-Sign = Literal["positive", "negative", "nonnegative", "nonpositive", "nonzero", "zero", "unknown"]
-
-
-@dataclass(frozen=True)
-class Comparison:
-    """`element` compared with 0 by `relation`; x < 0 is stated as -x > 0."""
-
-    element: Scalar
-    relation: Relation
+__all__ = ["Comparison", "ParameterDomain", "Relation", "Sign", "SignArgument"]
 
 
 @dataclass(frozen=True)
 class ParameterDomain:
-    """All points of the field's parameters at which every condition holds."""
+    """All points of the field's parameters at which every condition holds.
+
+    A condition holds only where its element is defined.
+    """
 
     field: ParameterField
     conditions: tuple[Comparison, ...]
+
+    @cached_property
+    def _facts(self) -> Facts:
+        return Facts(Conditions(self.field, self.conditions))
+
+    def sign_of(self, element: Scalar) -> SignArgument:
+        """Return the sign that an element has wherever it is defined here, and the reason."""
+        return self._facts.sign_of(element)
+
+    def excludes(self, comparison: Comparison) -> SignArgument | None:
+        """Return why the comparison holds nowhere here, or None if no reason is found."""
+        argument = self.sign_of(comparison.element)
+        apart = not argument.values & relation_values(comparison.relation)
+        return argument if apart else None
+
+    def implies(self, comparison: Comparison) -> SignArgument | None:
+        """Return why the comparison holds everywhere here, or None if no reason is found.
+
+        Its element has to be defined everywhere too.
+        """
+        argument = self.sign_of(comparison.element)
+        if not argument.values <= relation_values(comparison.relation):
+            return None
+        below = self.sign_of(self.field.of_polynomial(comparison.element.denom))
+        return argument if below.never_zero else None
+
+    def contradiction(self) -> tuple[Comparison, ...] | None:
+        """Return conditions that cannot hold together, or None if none are found.
+
+        None of those returned can be left out without losing the argument.
+        """
+        for place, condition in enumerate(self.conditions):
+            others = self.conditions[:place] + self.conditions[place + 1 :]
+            if not ParameterDomain(self.field, others).excludes(condition):
+                continue
+            needed = list(others)
+            for other in others:
+                fewer = tuple(c for c in needed if c is not other)
+                if ParameterDomain(self.field, fewer).excludes(condition):
+                    needed.remove(other)
+            return tuple(c for c in self.conditions if c is condition or c in needed)
+        return None
+
+    def narrowed(self, *comparisons: Comparison) -> ParameterDomain:
+        """Return the part where these hold too; what is implied already is not added."""
+        domain = self
+        for comparison in comparisons:
+            if not domain.implies(comparison):
+                domain = ParameterDomain(self.field, (*domain.conditions, comparison))
+        return domain
+
+    def substituted(self, name: str, element: Scalar) -> ParameterDomain:
+        """Return the domain of the other parameters, with an element in the place of one.
+
+        Conditions that become implied by those before them are dropped; one that becomes
+        false stays, and is a contradiction.  Raises ZeroDivisionError where a condition
+        is defined nowhere then.
+        """
+        put = [
+            Comparison(self.field.substituted(c.element, {name: element}), c.relation)
+            for c in self.conditions
+        ]
+        return ParameterDomain(self.field, ()).narrowed(*put)
+
+    def sample(self, count: int, seed: int) -> list[dict[str, Fraction]]:
+        """Return up to `count` points of the domain, rational and short; the same each time.
+
+        Every parameter has a value.  Fewer points, or none, are returned where a bounded
+        search finds no more: this does not say that the domain is empty.
+        """
+        return sample_points(self.field, self.conditions, count, seed)
