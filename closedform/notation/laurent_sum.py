@@ -17,22 +17,19 @@ from math import gcd, isqrt, lcm
 
 from closedform.algebra.field import rational
 from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
+from closedform.notation.choice import places_of, shortest_of
 from closedform.notation.expression import (
     ONE,
-    Call,
     Expression,
     Name,
     Negation,
     Number,
     Power,
-    Product,
     Quotient,
-    Sum,
-    operations,
     power_of,
     product,
 )
-from closedform.notation.terms import opened, sum_of
+from closedform.notation.terms import sum_of
 
 __all__ = [
     "Laurent",
@@ -80,28 +77,14 @@ def written(
     return Negation(term) if weight.number < 0 else term
 
 
-def shortest(forms: Iterable[Weight]) -> Weight:
-    """Return the form with the fewest operations; of equals, that with the fewest brackets."""
-    return min(forms, key=lambda form: rank(written(form)))
+def shortest(field: ParameterField, forms: Iterable[Weight]) -> Weight:
+    """Return the form with the fewest operations; of equals, what a person would write."""
+    return shortest_of(forms, written, _places(field))
 
 
-def rank(expression: Expression) -> tuple[int, int]:
-    """Return what decides between equal formulas: operations, then sums inside of others."""
-    shown = opened(expression)
-    return operations(shown), _sums_in(shown) - isinstance(shown, Sum)
-
-
-def _sums_in(expression: Expression) -> int:
-    match expression:
-        case Sum(terms):
-            return 1 + sum(map(_sums_in, terms))
-        case Product(factors):
-            return sum(map(_sums_in, factors))
-        case Negation(operand) | Call(_, operand):
-            return _sums_in(operand)
-        case Quotient(first, second) | Power(first, second):
-            return _sums_in(first) + _sums_in(second)
-    return 0
+@lru_cache(maxsize=64)
+def _places(field: ParameterField) -> dict[str, int]:
+    return places_of(field.parameters)
 
 
 def product_of_weights(weights: Iterable[Weight]) -> Weight:
@@ -164,10 +147,10 @@ def shortest_sum(field: ParameterField, terms: Laurent) -> Weight:
     flat = _sum_of_groups(field, [(term,) for term in terms])
     exponents, number = _shared(terms)
     if any(exponents) or number != 1:
-        return shortest([_pulled(field, terms, exponents, number), flat])
+        return shortest(field, [_pulled(field, terms, exponents, number), flat])
     forms = [*_fractions(field, terms), *_products(field, terms), *_squares(field, terms)]
     forms += [_sum_of_groups(field, groups) for groups in _groupings(terms)]
-    return shortest([flat, *forms])
+    return shortest(field, [flat, *forms])
 
 
 def _sum_of_groups(field: ParameterField, groups: Sequence[Laurent]) -> Weight:

@@ -97,7 +97,7 @@ def _weight(field: ParameterField, value: Factored) -> Weight:
         rest = tuple(pair for pair in above if pair not in chosen)
         inner = shortest_sum(field, _multiplied(chosen, tuple(exponents), single))
         forms.append(_factored(field, inner, rest, below))
-    return shortest(forms)
+    return shortest(field, forms)
 
 
 def _expansions(powers: Powers) -> Iterator[Powers]:

@@ -10,15 +10,13 @@ subtraction of exponents.
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from fractions import Fraction
 from functools import lru_cache
-from math import gcd, lcm
-from typing import Literal
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import Factored, ParameterField
+from closedform.notation.choice import places_of, shortest_formula
 from closedform.notation.expression import (
     ZERO,
     Call,
@@ -30,27 +28,17 @@ from closedform.notation.expression import (
 )
 from closedform.notation.rational_formula import taken_apart, weighted_parts, weighted_rational
 from closedform.notation.terms import opened, sum_of
+from closedform.response.parametric.fronts import MINUS, UNIT, fronts_of, over
+from closedform.response.parametric.terms import (
+    Kernel,
+    Term,
+    apart,
+    gathered,
+    separable,
+    separated,
+)
 
 __all__ = ["Kernel", "Term", "closed_form", "fronted_matrix"]
-
-Kernel = Literal["cos", "sin", "cosh", "sinh"]
-
-_UNIT = Factored(Fraction(1), ())
-
-
-@dataclass(frozen=True)
-class Term:
-    """Amount · t^power · e^(rate t) · kernel(frequency t).
-
-    Amount, rate and frequency are elements of one field of parameters and names; the rate is
-    zero where there is no exponential, kernel and frequency are both None or both given.
-    """
-
-    amount: Scalar
-    power: int
-    rate: Scalar
-    kernel: Kernel | None = None
-    frequency: Scalar | None = None
 
 
 @dataclass(frozen=True)
@@ -72,7 +60,7 @@ class _Group:
 
 def closed_form(field: ParameterField, terms: Sequence[Term], time: str) -> Expression:
     """Return the shortest formula of a sum of terms, as a function of `time`."""
-    return _closed_form(field, _gathered(field, terms), time)
+    return _closed_form(field, gathered(field, terms), time)
 
 
 Rows = tuple[tuple[Expression, ...], ...]
@@ -86,7 +74,7 @@ def fronted_matrix(
     `written` is the same matrix with nothing in front.  The factor may be an exponential
     that all entries share, a common factor or denominator, or both.
     """
-    kept = [[_gathered(field, terms) for terms in row] for row in entries]
+    kept = [[gathered(field, terms) for terms in row] for row in entries]
     everything = [term for row in kept for terms in row for term in terms]
     forms: list[tuple[Expression | None, Rows]] = [(None, written)]
     rates = {term.rate for term in everything}
@@ -96,8 +84,8 @@ def fronted_matrix(
         kept = [[_without_rate(field, terms) for terms in row] for row in kept]
         forms.append((shared[0], _written_rows(field, kept, time)))
     amounts = [taken_apart(field, term.amount) for term in everything]
-    for front in _fronts(amounts, few=True):
-        if front != _UNIT:
+    for front in fronts_of(amounts, few=True):
+        if front != UNIT:
             scale = 1 / field.product_of(front)
             inside = [[_scaled(terms, scale) for terms in row] for row in kept]
             outside = weighted_parts(field, front, shared)
@@ -125,44 +113,37 @@ def _scaled(terms: Sequence[Term], factor: Scalar) -> tuple[Term, ...]:
     return tuple(replace(term, amount=term.amount * factor) for term in terms)
 
 
-def _gathered(field: ParameterField, terms: Iterable[Term]) -> tuple[Term, ...]:
-    """Return the terms with those of one function added up, and none that is zero."""
-    found: dict[Term, Scalar] = {}
-    for term in terms:
-        bare = replace(term, amount=field.scalar(0))
-        found[bare] = found.get(bare, field.scalar(0)) + term.amount
-    return tuple(replace(bare, amount=amount) for bare, amount in found.items() if amount)
-
-
 @lru_cache(maxsize=4096)
 def _closed_form(field: ParameterField, terms: tuple[Term, ...], time: str) -> Expression:
     if not terms:
         return ZERO
-    forms = [_written(field, _groups(field, terms, time), time)]
-    for own, others in _separations(field, terms):
-        both = [_closed_form(field, own, time), _closed_form(field, others, time)]
-        forms.append(sum_of(both))
-    return opened(min(forms, key=operations))
+    forms = [_plain(field, terms, time)]
+    names = separable(field, terms)
+    if len(names) > SEPARATED:
+        names = apart(field, terms, names)
+        parts = separated(field, terms, names)
+        forms.append(sum_of([_plain(field, part, time) for part in parts if part]))
+    separate: list[Expression] = []
+    rest = terms
+    while names and len(names) <= SEPARATED and rest:
+        options = []
+        for name in names:
+            own, others = separated(field, rest, [name])
+            options.append((_plain(field, own, time), _plain(field, others, time), name, others))
+        best = min(options, key=lambda option: operations(option[0]) + operations(option[1]))
+        separate.append(best[0])
+        forms.append(sum_of([*separate, best[1]]))
+        names, rest = [name for name in names if name != best[2]], best[3]
+    return opened(shortest_formula(forms, places_of(field.parameters)))
 
 
-def _separations(
-    field: ParameterField, terms: Sequence[Term]
-) -> Iterator[tuple[tuple[Term, ...], tuple[Term, ...]]]:
-    """The terms parted by a parameter that occurs in amounts only, above and once: x0·f + g."""
-    if len(terms) < 2:
-        return
-    for place, name in enumerate(field.parameters):
-        zero, symbol = field.scalar(0), field.symbol(name)
-        used = {n for t in terms for e in (t.rate, t.frequency) if e for n in field.names_in(e)}
-        if name in used or any(term.amount.denom.degree(symbol.numer) > 0 for term in terms):
-            continue
-        degrees = [{m[place] for m in term.amount.numer.itermonoms()} for term in terms]
-        if set().union(*degrees) != {0, 1} or not any(len(d) == 2 for d in degrees):
-            continue
-        rests = [field.substituted(term.amount, {name: zero}) for term in terms]
-        own = [replace(t, amount=t.amount - r) for t, r in zip(terms, rests, strict=True)]
-        others = [replace(t, amount=r) for t, r in zip(terms, rests, strict=True)]
-        yield tuple(t for t in own if t.amount), tuple(t for t in others if t.amount)
+SEPARATED = 3
+"""Up to this number of initial values each is tried on its own; beyond it, all or none."""
+
+
+@lru_cache(maxsize=16384)
+def _plain(field: ParameterField, terms: tuple[Term, ...], time: str) -> Expression:
+    return _written(field, _groups(field, terms, time), time) if terms else ZERO
 
 
 def _exponential(field: ParameterField, rate: Scalar, time: str) -> Expression:
@@ -188,11 +169,35 @@ def _written(field: ParameterField, groups: Sequence[_Group], time: str) -> Expr
     if len(groups) == 1:
         return _written_group(field, groups[0], time)
     forms = []
-    for front in _fronts([part.amount for group in groups for part in group.parts]):
-        parts = [_written_group(field, _divided(group, front), time) for group in groups]
-        inside = sum_of(parts)
-        forms.append(inside if front == _UNIT else _product(field, front, [], inside))
-    return min(forms, key=operations)
+    for front in fronts_of([part.amount for group in groups for part in group.parts]):
+        inside = _sum(field, [_divided(group, front) for group in groups], time)
+        forms.append(inside if front == UNIT else _product(field, front, [], inside))
+    return shortest_formula(forms, places_of(field.parameters))
+
+
+def _sum(field: ParameterField, groups: Sequence[_Group], time: str) -> Expression:
+    """The groups one by one, or first those that share a long denominator that others lack."""
+    forms = [sum_of([_written_group(field, group, time) for group in groups])]
+    for sharing in _sharing(groups) if len(groups) > 2 else ():
+        others = [group for group in groups if group not in sharing]
+        both = [_written(field, part, time) for part in (sharing, others)]
+        forms.append(sum_of(both if groups[0] in sharing else both[::-1]))
+    return shortest_formula(forms, places_of(field.parameters))
+
+
+def _sharing(groups: Sequence[_Group]) -> list[list[_Group]]:
+    """Return sets of at least two groups, not all, whose amounts share a factor below."""
+    found = []
+    below = {f: None for g in groups for p in g.parts for f, e in p.amount.factors if e < 0}
+    for factor in below:
+        sharing = [
+            group
+            for group in groups
+            if all(dict(part.amount.factors).get(factor, 0) < 0 for part in group.parts)
+        ]
+        if 1 < len(sharing) < len(groups) and sharing not in found:
+            found.append(sharing)
+    return found
 
 
 def _written_group(field: ParameterField, group: _Group, time: str) -> Expression:
@@ -205,12 +210,12 @@ def _written_group(field: ParameterField, group: _Group, time: str) -> Expressio
         group, parts=tuple(replace(part, power=part.power - least) for part in group.parts)
     )
     outside = [power_of(Name(time), least), *outside] if least else outside
-    for front in _fronts([part.amount for part in group.parts]):
+    for front in fronts_of([part.amount for part in group.parts]):
         divided = _divided(lowered, front)
         inside = sum_of([_written_part(field, part, [], time) for part in divided.parts])
-        bare = front == _UNIT and not outside
+        bare = front == UNIT and not outside
         forms.append(inside if bare else _product(field, front, outside, inside))
-    return min(forms, key=operations)
+    return shortest_formula(forms, places_of(field.parameters))
 
 
 def _written_part(
@@ -226,67 +231,12 @@ def _product(
     field: ParameterField, front: Factored, outside: Sequence[Expression], inside: Expression
 ) -> Expression:
     if isinstance(inside, Negation):
-        front, inside = _over(front, _MINUS), inside.operand
+        front, inside = over(front, MINUS), inside.operand
     return weighted_parts(field, front, [*outside, inside])
 
 
 def _divided(group: _Group, front: Factored) -> _Group:
-    if front == _UNIT:
+    if front == UNIT:
         return group
-    parts = tuple(replace(part, amount=_over(part.amount, front)) for part in group.parts)
+    parts = tuple(replace(part, amount=over(part.amount, front)) for part in group.parts)
     return replace(group, parts=parts)
-
-
-_MINUS = Factored(Fraction(-1), ())
-
-
-def _over(value: Factored, divisor: Factored) -> Factored:
-    exponents = dict(value.factors)
-    for factor, exponent in divisor.factors:
-        exponents[factor] = exponents.get(factor, 0) - exponent
-    return Factored(
-        value.content / divisor.content, tuple((f, e) for f, e in exponents.items() if e)
-    )
-
-
-def _fronts(amounts: Sequence[Factored], *, few: bool = False) -> tuple[Factored, ...]:
-    """Return factors that may stand in front of a sum with these amounts, 1 first.
-
-    They are made of the factors shared above, those shared below, and the least common
-    denominator, with the number or without; each takes the sign of the first amount, or its
-    opposite.  `few` leaves out the signs and what is rarely the best.
-    """
-    factors = list(dict.fromkeys(f for amount in amounts for f, _ in amount.factors))
-    above, below, common = [], [], []
-    for factor in factors:
-        exponents = [dict(amount.factors).get(factor, 0) for amount in amounts]
-        low, high = min(exponents), max(exponents)
-        above += [(factor, low)] if low > 0 else []
-        below += [(factor, high)] if high < 0 else []
-        common += [(factor, low)] if low < 0 else []
-    numbers = [amount.content for amount in amounts]
-    size = gcd(*(n.numerator for n in numbers))
-    shared = gcd(*(n.denominator for n in numbers))
-    bottom = lcm(*(n.denominator for n in numbers))
-    one = Fraction(1)
-    found = [
-        (above + common, Fraction(size, bottom)),
-        (above + below, Fraction(size, shared)),
-        (common, Fraction(1, bottom)),
-    ]
-    if not few:
-        found += [
-            (above + common, one),
-            (above + below, one),
-            (above, Fraction(size)),
-            (above, one),
-            (below, Fraction(1, shared)),
-            (below, one),
-            (common, one),
-        ]
-    sign = 1 if numbers[0] > 0 else -1
-    fronts = [_UNIT]
-    for powers, number in found:
-        signed = [number * sign] if few else [number * sign, -number * sign]
-        fronts += [Factored(n, tuple(powers)) for n in signed]
-    return tuple(dict.fromkeys(fronts))

@@ -1,0 +1,96 @@
+"""Choosing among equal formulas: the fewest operations, then what a person would rather write."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Mapping
+from typing import TypeVar
+
+from closedform.notation.expression import (
+    Call,
+    Expression,
+    Name,
+    Negation,
+    Number,
+    Power,
+    Product,
+    Quotient,
+    Sum,
+    operations,
+)
+from closedform.notation.terms import opened
+
+__all__ = ["places_of", "shortest_formula", "shortest_of"]
+
+T = TypeVar("T")
+
+
+def shortest_formula(formulas: Iterable[Expression], places: Mapping[str, int]) -> Expression:
+    """Return the formula that is shortest; `places` says which name comes before which."""
+    return shortest_of(formulas, lambda formula: formula, places)
+
+
+def shortest_of(
+    items: Iterable[T], formula_of: Callable[[T], Expression], places: Mapping[str, int]
+) -> T:
+    """Return the item whose formula has the fewest operations.
+
+    Of equals, the one with the fewest names, then with the fewest sums inside of other
+    operations, then with the fewest minus signs in these, then with the fewest differences
+    whose names come in the other order; then the earlier.
+    """
+    shown = [(item, opened(formula_of(item))) for item in items]
+    counts = [operations(formula) for _, formula in shown]
+    least = min(counts)
+    best = [pair for pair, count in zip(shown, counts, strict=True) if count == least]
+    if len(best) == 1:
+        return best[0][0]
+    return min(best, key=lambda pair: _taste(pair[1], places))[0]
+
+
+def places_of(names: Iterable[str]) -> dict[str, int]:
+    """Return the place of each name."""
+    return {name: place for place, name in enumerate(names)}
+
+
+def _taste(formula: Expression, places: Mapping[str, int]) -> tuple[int, int, int, int]:
+    names = sums = signs = turned = 0
+    waiting: list[tuple[Expression, bool]] = [(formula, False)]
+    while waiting:
+        part, inside = waiting.pop()
+        match part:
+            case Name():
+                names += 1
+            case Number():
+                pass
+            case Sum(terms):
+                sums += inside
+                signs += inside and sum(isinstance(term, Negation) for term in terms)
+                turned += len(terms) == 2 and _is_turned(*terms, places)
+                waiting += [(t.operand if isinstance(t, Negation) else t, True) for t in terms]
+            case Product(factors):
+                waiting += [(factor, True) for factor in factors]
+            case Negation(operand) | Call(_, operand):
+                waiting.append((operand, True))
+            case Quotient(first, second) | Power(first, second):
+                waiting += [(first, True), (second, True)]
+    return names, sums, signs, turned
+
+
+def _is_turned(first: Expression, second: Expression, places: Mapping[str, int]) -> bool:
+    if not isinstance(second, Negation):
+        return False
+    return _first_place(first, places) > _first_place(second.operand, places)
+
+
+def _first_place(formula: Expression, places: Mapping[str, int]) -> int:
+    match formula:
+        case Name(text):
+            return places.get(text, len(places))
+        case Number():
+            return len(places)
+        case Sum(parts) | Product(parts):
+            return min(_first_place(part, places) for part in parts)
+        case Negation(part) | Call(_, part):
+            return _first_place(part, places)
+        case Quotient(first, second) | Power(first, second):
+            return min(_first_place(first, places), _first_place(second, places))

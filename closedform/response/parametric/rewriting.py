@@ -1,0 +1,214 @@
+"""Abbreviations: formulas of the parameters with a name, used where they shorten the results.
+
+An abbreviation name = f, or name^2 = f, is used by eliminating a parameter: from
+delta = c/(2*m) follows c = 2*m*delta, and this is put in the place of c.  Every choice of
+abbreviations is written out, as far as there are few, and the shortest is kept.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, replace
+from itertools import product
+from math import prod
+from typing import Literal
+
+from closedform.algebra.field import Scalar
+from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
+from closedform.notation.expression import Expression, operations
+from closedform.response.parametric.closed_form import Term, closed_form
+
+__all__ = ["Rewriting", "Shortest", "rewriting_for", "shortest"]
+
+TRIED = 16
+"""Up to this number of combinations all are tried; else they are improved one by one."""
+
+
+@dataclass(frozen=True)
+class Rewriting:
+    """`name`^`power` = `value`, used by putting `replacement` in the place of `parameter`."""
+
+    name: str
+    parameter: str
+    replacement: Scalar
+    value: Scalar
+    power: int = 1
+
+
+@dataclass(frozen=True)
+class Shortest:
+    """Functions as terms after rewriting, their formulas, and the abbreviations in them."""
+
+    functions: tuple[tuple[Term, ...], ...]
+    formulas: tuple[Expression, ...]
+    names: tuple[str, ...]
+
+
+def rewriting_for(
+    field: ParameterField, name: str, value: Scalar, power: int = 1
+) -> tuple[Rewriting, ...]:
+    """Return the ways to use name^power = value, one for each parameter that it gives.
+
+    A parameter is given where numerator and denominator of `value` hold it at most once:
+    from y = (a x + b)/(c x + d) follows x = (d y - b)/(a - c y).  `name` is a parameter of
+    `field` that does not occur in `value`.
+    """
+    found = []
+    left = field.symbol(name) ** power
+    for parameter in field.parameters:
+        if parameter not in field.names_in(value):
+            continue
+        upper = _linear(field, value.numer, parameter)
+        lower = _linear(field, value.denom, parameter)
+        if upper is None or lower is None:
+            continue
+        (a, b), (c, d) = upper, lower
+        replacement = (d * left - b) / (a - c * left)
+        made = Rewriting(name, parameter, replacement, value, power)
+        if _restored(field, replacement, made) == field.symbol(parameter):
+            found.append(made)
+    return tuple(found)
+
+
+def _linear(
+    field: ParameterField, polynomial: ParameterPolynomial, parameter: str
+) -> tuple[Scalar, Scalar] | None:
+    """Return a and b of a polynomial a x + b; None if the degree is higher."""
+    place = field.parameters.index(parameter)
+    if any(m[place] > 1 for m in polynomial.itermonoms()):
+        return None
+    element = field.of_polynomial(polynomial)
+    rest = field.substituted(element, {parameter: field.scalar(0)})
+    return (element - rest) / field.symbol(parameter), rest
+
+
+def _restored(field: ParameterField, element: Scalar, rewriting: Rewriting) -> Scalar:
+    """Return the element with the value in place of name^power; lower powers stay."""
+    place = field.parameters.index(rewriting.name)
+    symbol = field.symbol(rewriting.name)
+    halves = []
+    for polynomial in (element.numer, element.denom):
+        total = field.scalar(0)
+        for monomial, coefficient in polynomial.iterterms():
+            whole, left = divmod(monomial[place], rewriting.power)
+            bare = tuple(0 if i == place else e for i, e in enumerate(monomial))
+            term = field.of_polynomial(polynomial.ring.term_new(bare, coefficient))
+            total += term * rewriting.value**whole * symbol**left
+        halves.append(total)
+    return halves[0] / halves[1]
+
+
+Choice = tuple[Rewriting, Literal["everywhere", "rates"]] | None
+"""How one abbreviation is used: everywhere, in rates and frequencies only, or not at all."""
+
+
+def shortest(
+    field: ParameterField,
+    functions: Sequence[Sequence[Term]],
+    rewritings: Sequence[Rewriting],
+    definitions_cost: Mapping[str, int],
+    time: str,
+) -> Shortest:
+    """Return the functions with those abbreviations that make the whole shortest.
+
+    The whole is the operations of all formulas and, from `definitions_cost`, those of the
+    definitions of the abbreviations in them.  Rewritings of one name exclude each other.
+    """
+    names = tuple(dict.fromkeys(r.name for r in rewritings))
+    options: list[list[Choice]] = [[None] for _ in names]
+    for name, choices in zip(names, options, strict=True):
+        for rewriting in rewritings:
+            if rewriting.name == name:
+                choices += [(rewriting, "everywhere"), (rewriting, "rates")]
+    values = {r.name: r.value for r in rewritings}
+    search = _Search(field, functions, names, values, definitions_cost, time, {})
+    if prod(map(len, options)) <= TRIED:
+        best = min(product(*options), key=search.cost)
+    else:
+        best = _improved(options, search)
+    return search.results[best]
+
+
+def _improved(options: Sequence[Sequence[Choice]], search: _Search) -> tuple[Choice, ...]:
+    """Change the use of one abbreviation at a time, as long as that shortens the whole."""
+    best: tuple[Choice, ...] = tuple(None for _ in options)
+    improving = True
+    while improving:
+        near = (
+            (*best[:i], choice, *best[i + 1 :])
+            for i, choices in enumerate(options)
+            for choice in choices
+        )
+        next_best = min(near, key=search.cost)
+        improving = search.cost(next_best) < search.cost(best)
+        best = next_best if improving else best
+    return best
+
+
+@dataclass(frozen=True)
+class _Search:
+    """What the choices are tried on; `results` keeps what was written."""
+
+    field: ParameterField
+    functions: Sequence[Sequence[Term]]
+    names: tuple[str, ...]
+    values: Mapping[str, Scalar]
+    definitions_cost: Mapping[str, int]
+    time: str
+    results: dict[tuple[Choice, ...], Shortest]
+
+    def cost(self, choices: tuple[Choice, ...]) -> int:
+        """Return the operations of formulas and definitions; of equals, fewer names win."""
+        result = self.results.get(choices)
+        if result is None:
+            result = self.results[choices] = self._written(choices)
+        definitions = sum(self.definitions_cost[name] for name in result.names)
+        return definitions + sum(map(operations, result.formulas))
+
+    def _written(self, choices: tuple[Choice, ...]) -> Shortest:
+        used = [choice for choice in choices if choice is not None]
+        functions = tuple(
+            tuple(_rewritten(self.field, term, used) for term in terms) for terms in self.functions
+        )
+        formulas = tuple(closed_form(self.field, terms, self.time) for terms in functions)
+        return Shortest(functions, formulas, self._names_in(functions))
+
+    def _names_in(self, functions: Sequence[Sequence[Term]]) -> tuple[str, ...]:
+        """Return the abbreviations in the functions, and those in their definitions."""
+        waiting = [e for terms in functions for term in terms for e in _elements(term)]
+        found: set[str] = set()
+        while waiting:
+            new = self.field.names_in(waiting.pop()).intersection(self.values) - found
+            found |= new
+            waiting += [self.values[name] for name in sorted(new)]
+        return tuple(name for name in self.names if name in found)
+
+
+def _elements(term: Term) -> Iterator[Scalar]:
+    yield from (term.amount, term.rate)
+    if term.frequency is not None:
+        yield term.frequency
+
+
+def _rewritten(
+    field: ParameterField,
+    term: Term,
+    used: Sequence[tuple[Rewriting, Literal["everywhere", "rates"]]],
+) -> Term:
+    for rewriting, extent in used:
+        amount, rate, frequency = term.amount, term.rate, term.frequency
+        if extent == "everywhere":
+            amount = _substituted(field, amount, rewriting)
+        rate = _substituted(field, rate, rewriting)
+        if frequency is not None:
+            frequency = _substituted(field, frequency, rewriting)
+        term = replace(term, amount=amount, rate=rate, frequency=frequency)
+    return term
+
+
+def _substituted(field: ParameterField, element: Scalar, rewriting: Rewriting) -> Scalar:
+    """Return the element without the parameter.  Raises ArithmeticError if it became another."""
+    changed = field.substituted(element, {rewriting.parameter: rewriting.replacement})
+    if _restored(field, changed - element, rewriting):
+        raise ArithmeticError(f"{rewriting} changes {element}")
+    return changed
