@@ -9,7 +9,7 @@ from itertools import pairwise
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
 from closedform.algebra.roots import RootSet, arrangement, root_set
 
-__all__ = ["Factor", "Spectrum", "polynomial_of_matrix", "spectrum_of"]
+__all__ = ["Factor", "Spectrum", "block_sizes", "polynomial_of_matrix", "spectrum_of"]
 
 
 @dataclass(frozen=True)
@@ -81,7 +81,7 @@ def spectrum_of(field: BaseField, matrix: FieldMatrix) -> Spectrum:
     factors = []
     for part, multiplicity in factored:
         p = part.monic()
-        blocks = (1,) if multiplicity == 1 else _blocks(field, matrix, p, multiplicity)
+        blocks = (1,) if multiplicity == 1 else block_sizes(field, matrix, p, multiplicity)
         factors.append(Factor(p, blocks, root_set(field, p)))
     return Spectrum(
         field, characteristic, tuple(sorted(factors, key=lambda f: arrangement(f.roots)))
@@ -98,7 +98,7 @@ def polynomial_of_matrix(field: BaseField, p: Polynomial, matrix: FieldMatrix) -
     return value
 
 
-def _blocks(
+def block_sizes(
     field: BaseField, matrix: FieldMatrix, p: Polynomial, multiplicity: int
 ) -> tuple[int, ...]:
     """The number of blocks of size >= k is (rank B^(k-1) - rank B^k)/d for B = p(A)."""

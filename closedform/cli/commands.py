@@ -22,8 +22,8 @@ __all__ = ["app", "main"]
 
 app = typer.Typer(
     help="Exact, proved closed-form responses of linear models x' = A x, written up as LaTeX.",
-    epilog="Exit status: 0 all well, 1 a result was refuted, 2 an input is not usable, "
-    "3 something outside is missing, such as a TeX engine.",
+    epilog="Exit status: 0 all well, 1 a result was refuted, 2 an input is not usable or too "
+    "extreme to be proved, 3 something outside is missing, such as a TeX engine.",
     no_args_is_help=True,
     add_completion=False,
     rich_markup_mode=None,  # drawn help takes twice as long to appear

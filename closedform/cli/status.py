@@ -1,4 +1,8 @@
-"""Exit statuses: 0 all well, 1 refuted, 2 input not usable, 3 something outside is missing."""
+"""Exit statuses: 0 all well, 1 refuted, 2 input not usable, 3 something outside is missing.
+
+A result that could not be proved, though nothing is wrong with it, counts as 2: 1 asks for
+the program to be mended, 2 for another input.
+"""
 
 from __future__ import annotations
 

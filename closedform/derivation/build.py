@@ -37,8 +37,9 @@ def derive(response: Response, record: VerificationRecord, *, digits: int = 6) -
     Every statement and table in it is proved once more as it will be printed, and the
     derivation's last check says so.
 
-    Raises:  ValueError if the record does not hold: nothing is derived from a refuted result;
-             StatementRefutedError if a step states what does not hold.
+    Raises:  ValueError if the record does not hold: nothing is derived from what is not proved;
+             StatementRefutedError if a step states what does not hold;
+             UnprovedError if it states what the proof does not settle.
     """
     if not record.holds:
         raise ValueError("only a response that was proved is derived")

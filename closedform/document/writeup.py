@@ -12,7 +12,11 @@ from closedform.document.record import record_text
 from closedform.document.render import check_options, check_template, render
 from closedform.model.model import Model
 from closedform.response.response import Response, respond
-from closedform.verification.record import ResponseRefutedError, VerificationRecord
+from closedform.verification.record import (
+    ResponseRefutedError,
+    UnprovedError,
+    VerificationRecord,
+)
 from closedform.verification.verify import verify
 
 __all__ = ["WriteUp", "write_up"]
@@ -44,13 +48,16 @@ def write_up(
     Raises:  UnknownDepthError, UnusableDigitsError for options out of their range;
              TemplateError if there is no such template;
              ResponseRefutedError if any identity is refuted, StatementRefutedError if a
-             statement of the derivation is (then nothing is written);
+             statement of the derivation is, UnprovedError if either is left open (then
+             nothing is written);
              CannotWriteError if a file cannot be written.
     """
     check_options(depth=depth, digits=digits)
     check_template(template)
     response = respond(model)
     verification = verify(response)
+    if verification.left_open and not verification.refuted:
+        raise UnprovedError(model.name, verification.left_open)
     if not verification.holds:
         raise ResponseRefutedError(model.name, verification.refuted)
     derivation = derive(response, verification, digits=digits)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 
 from closedform.errors import Place
 from closedform.model.entries import kind_of
@@ -32,14 +32,20 @@ KEPT = {
 }
 """Names that mean something else in a formula, and what to write."""
 LETTERS_OF_WRITE_UPS = ("lambda", "mu", "s", "p", "g", "r")
+NOTHING: Mapping[str, str] = {}
 
 
 def check_name(
-    name: str, key: str, source: Source, *, time: str | None = None, states: Sequence[str] = ()
+    name: str,
+    key: str,
+    source: Source,
+    *,
+    time: str | None = None,
+    taken: Mapping[str, str] = NOTHING,
 ) -> None:
     """Raise UnusableNameError unless a name can be used in formulas.
 
-    `time` is the name of the time and `states` are those already taken.
+    `time` is the name of the time; `taken` holds the names that are in use, and by what.
     """
     reason = None
     if not USABLE.fullmatch(name):
@@ -57,8 +63,8 @@ def check_name(
         reason = KEPT[name]
     elif name == time:
         reason = "it is the name of the time; choose another, or set 'time'"
-    elif name in states:
-        reason = "a state has that name; choose another"
+    elif name in taken:
+        reason = f"{taken[name]} has that name; choose another"
     if reason:
         raise UnusableNameError(_place(key, source), name, reason)
 
@@ -86,7 +92,8 @@ def check_lookalike(name: str, key: str, source: Source, printed: dict[str, str]
 
 
 def _place(key: str, source: Source) -> Place:
-    return source.at_name(key) if key.startswith("outputs.") else source.at(key)
+    """Return the place of a name: of the key where it is one, of the value where it is that."""
+    return source.at_name(key) if "." in key else source.at(key)
 
 
 def check_states(given: Sequence[object], time: str, source: Source) -> tuple[str, ...]:

@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass
-from typing import TypeVar
+from typing import NamedTuple, TypeVar
 
 from closedform.errors import Place
 from closedform.notation.errors import PlacedError
@@ -15,14 +15,30 @@ __all__ = ["Source"]
 T = TypeVar("T")
 
 QUOTES = ('"""', "'''", '"', "'")
-HEADING = re.compile(r"(?m)^[ \t]*\[[ \t]*([A-Za-z_][\w-]*)[ \t]*\][ \t]*(?:#.*)?$")
-"""The heading of a table, such as ``[outputs]``."""
+HEADING = re.compile(
+    r"""(?mx) ^[ \t]* (?P<open> \[\[? ) [ \t]*
+    (?P<name> [A-Za-z_][\w-]* (?: [ \t]*\.[ \t]* (?: [\w-]+ | "[^"\n]*" | '[^'\n]*' ) )* )
+    [ \t]* \]\]? [ \t]* (?: \#.* )? $"""
+)
+"""The heading of a table, such as ``[outputs]``, ``[parameters.k]`` or ``[[values]]``."""
 PIECE = re.compile(
     r'''(?s)(?P<comment>\#[^\n]*)|(?P<blank>\s+)|(?P<open>[\[{])|(?P<close>[\]}])|(?P<comma>,)
     |"""(?:\\.|[^\\])*?"""|\'\'\'.*?\'\'\'|"(?:\\.|[^"\\])*"|'[^']*'|[^\s,\[\]{}\#"']+''',
     re.VERBOSE,
 )
 """The pieces of a TOML value, as far as they matter for counting the entries of an array."""
+
+Path = tuple[str | int, ...]
+"""The parts of a key, entries counted from 1: ``values[2].m`` is ("values", 2, "m")."""
+
+
+class _Section(NamedTuple):
+    """A heading with the text below it; `name` is where its last part starts."""
+
+    path: Path
+    name: int
+    start: int
+    end: int
 
 
 @dataclass(frozen=True, slots=True)
@@ -41,21 +57,22 @@ class Source:
         return Place(self.place.file, f"{self.place.key}.{key}" if self.place.key else key)
 
     def at(self, key: str) -> Place:
-        """Return the place of a key or an entry: ``title``, ``matrix[2][3]``, ``outputs.drift``.
+        """Return the place of a key or an entry: ``title``, ``matrix[2][3]``, ``values[2].m``.
 
         It has a line and a column if they can be told for certain: the key must be set
         in one line of the text only.  This searches the text, so it is for errors.
         """
-        start = self._value(key)
-        return self.named(key) if start is None else self._place(key, start)
+        found = self._found(key)
+        return self.named(key) if found is None else self._place(key, found[1])
 
     def at_name(self, key: str) -> Place:
-        """Return the place of the key itself, as `at` does for its value."""
-        if found := self._setting(key):
-            return self._place(key, found.start("name"))
-        for heading in HEADING.finditer(self.text):
-            if heading[1] == key:
-                return self._place(key, heading.start(1))
+        """Return the place of the key itself, or of its heading, as `at` does for its value."""
+        if found := self._found(key):
+            return self._place(key, found[0])
+        path = _path(key)
+        for section in self._sections():
+            if path and section.path[: len(path)] == path:
+                return self._place(key, section.name)
         return self.named(key)
 
     def read(self, text: str, key: str, work: Callable[[Place], T]) -> T:
@@ -67,9 +84,10 @@ class Source:
         try:
             return work(self.named(key))
         except PlacedError:
-            start = self._value(key)
-            if start is None:
+            found = self._found(key)
+            if found is None:
                 raise
+            start = found[1]
             quote = next((q for q in QUOTES if self.text.startswith(q, start)), "")
             start += len(quote)
             if len(quote) > 1 and self.text.startswith("\n", start):
@@ -84,44 +102,84 @@ class Source:
         excerpt = self.text.split("\n")[line - 1]
         return Place(self.place.file, self.named(key).key, line, column, excerpt)
 
-    def _value(self, key: str) -> int | None:
-        """Return where the value of a key, or the entry of an array, starts in the text."""
-        name, *indices = re.split(r"[\[\]]+", key.rstrip("]"))
-        found = self._setting(name)
-        if found is None:
-            return None
-        start = found.end()
-        for index in indices:
-            start = self._entry(start, int(index))
-        return start
-
-    def _setting(self, key: str) -> re.Match[str] | None:
-        """Return the match of ``key =`` in the part of the text below the key's heading.
-
-        There is none for keys of an inline table, and none if several lines look like it.
-        """
-        table, _, name = key.rpartition(".")
+    def _sections(self) -> Iterator[_Section]:
+        """Yield the text before the first heading, then each heading's."""
         headings = list(HEADING.finditer(self.text))
-        names = ["", *(heading[1] for heading in headings)]
-        if names.count(table) != 1:
+        starts = [0, *(heading.end() for heading in headings)]
+        ends = [*(heading.start() for heading in headings), len(self.text)]
+        yield _Section((), 0, starts[0], ends[0])
+        rows: dict[str, int] = {}
+        for heading, start, end in zip(headings, starts[1:], ends[1:], strict=True):
+            parts = list(re.finditer(r"\"[^\"\n]*\"|'[^'\n]*'|[\w-]+", heading["name"]))
+            path: Path = tuple(part[0].strip("\"'") for part in parts)
+            if len(heading["open"]) > 1:
+                name = heading["name"]
+                rows[name] = rows.get(name, 0) + 1
+                path = (*path, rows[name])
+            yield _Section(path, heading.start("name") + parts[-1].start(), start, end)
+
+    def _found(self, key: str) -> tuple[int, int] | None:
+        """Return where a key, or an entry of an array, and where its value starts.
+
+        The key may stand below a heading, be dotted, or belong to an inline table; there is
+        none if several lines look like it.
+        """
+        path = _path(key)
+        sections = list(self._sections())
+        for head in range(len(path) - 1, -1, -1):
+            below = [section for section in sections if section.path == path[:head]]
+            if len(below) != 1:
+                continue
+            for tail in range(len(path), head, -1):
+                if found := self._setting(path[head:tail], below[0]):
+                    return self._inside(found.start("name"), found.end(), path[tail:])
+        return None
+
+    def _setting(self, parts: Path, section: _Section) -> re.Match[str] | None:
+        """Return the match of ``a.b =`` below a heading, if there is one only."""
+        if any(isinstance(part, int) for part in parts):
             return None
-        k = names.index(table)
-        start = headings[k - 1].end() if k else 0
-        end = headings[k].start() if k < len(headings) else len(self.text)
-        pattern = rf"""(?m)^[ \t]*(?P<name>["']?{re.escape(name)}["']?)[ \t]*=[ \t]*"""
-        found = list(re.compile(pattern).finditer(self.text, start, end))
+        dotted = r"[ \t]*\.[ \t]*".join(rf"""["']?{re.escape(str(part))}["']?""" for part in parts)
+        pattern = re.compile(rf"(?m)^[ \t]*(?P<name>{dotted})[ \t]*=[ \t]*")
+        found = list(pattern.finditer(self.text, section.start, section.end))
         return found[0] if len(found) == 1 else None
+
+    def _inside(self, name: int, value: int, path: Path) -> tuple[int, int] | None:
+        """Return where the part of a value, and where the value of that part starts."""
+        for part in path:
+            if isinstance(part, int):
+                name = value = self._entry(value, part)
+                continue
+            found = self._member(value, part)
+            if found is None:
+                return None
+            name, value = found.start(), found.end()
+        return name, value
 
     def _entry(self, start: int, index: int) -> int:
         """Return where an entry, counted from 1, of the array that starts here starts."""
-        depth, count, fresh = 0, 0, False
+        for count, entry in enumerate(self._entries(start), start=1):
+            if count == index:
+                return entry
+        return start
+
+    def _member(self, start: int, name: str) -> re.Match[str] | None:
+        """Return the match of ``name =`` in the inline table that starts here."""
+        pattern = re.compile(rf"""["']?{re.escape(name)}["']?\s*=\s*""")
+        if not self.text.startswith("{", start):
+            return None
+        found = (pattern.match(self.text, entry) for entry in self._entries(start))
+        return next((match for match in found if match), None)
+
+    def _entries(self, start: int) -> Iterator[int]:
+        """Yield where each entry of the array or the inline table that starts here starts."""
+        depth, fresh = 0, False
         for piece in PIECE.finditer(self.text, start):
             if piece.lastgroup in ("comment", "blank"):
                 continue
-            if fresh and depth == 1:
-                count, fresh = count + 1, False
-                if count == index:
-                    return piece.start()
+            if fresh and depth == 1 and piece.lastgroup != "close":
+                fresh = False
+                yield piece.start()
             if piece.lastgroup == "comma":
                 fresh = depth == 1
             elif piece.lastgroup == "open":
@@ -129,4 +187,12 @@ class Source:
                 fresh = depth == 1
             elif piece.lastgroup == "close":
                 depth -= 1
-        return start
+            if depth <= 0:
+                return
+
+
+def _path(key: str) -> Path:
+    """Return the parts of a key."""
+    return tuple(
+        int(index) if index else name for name, index in re.findall(r"([^.\[\]]+)|\[(\d+)\]", key)
+    )

@@ -17,6 +17,7 @@ from math import gcd, isqrt, lcm
 
 from closedform.algebra.field import rational
 from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
+from closedform.algebra.polynomial_factors import irreducible_factors
 from closedform.notation.choice import places_of, shortest_of
 from closedform.notation.expression import (
     ONE,
@@ -36,6 +37,7 @@ __all__ = [
     "Weight",
     "laurent_of",
     "monomial_weight",
+    "ordered",
     "power_of_weight",
     "product_of_weights",
     "shortest",
@@ -119,11 +121,11 @@ def _is_long(factor: Expression) -> bool:
 @lru_cache(maxsize=4096)
 def laurent_of(polynomial: ParameterPolynomial) -> Laurent:
     """Return the terms of a polynomial in the order of printing."""
-    return _ordered((monomial, rational(c)) for monomial, c in polynomial.iterterms())
+    return ordered((monomial, rational(c)) for monomial, c in polynomial.iterterms())
 
 
-def _ordered(terms: Iterable[tuple[tuple[int, ...], Fraction]]) -> Laurent:
-    """Simple terms first; of equally simple ones, those of earlier parameters."""
+def ordered(terms: Iterable[tuple[tuple[int, ...], Fraction]]) -> Laurent:
+    """Return terms in the order of printing: simple ones first, then by the parameters in them."""
     return tuple(
         sorted(
             ((m, c) for m, c in terms if c),
@@ -178,7 +180,7 @@ def _pulled(
     field: ParameterField, terms: Laurent, exponents: Sequence[int], number: Fraction
 ) -> Weight:
     """The factor times what is left of the terms without it."""
-    left = _ordered(
+    left = ordered(
         (tuple(e - d for e, d in zip(m, exponents, strict=True)), c / number) for m, c in terms
     )
     front = monomial_weight(field, exponents, number)
@@ -223,21 +225,13 @@ def _products(field: ParameterField, terms: Laurent) -> Iterator[Weight]:
         return
     if any(e < 0 for m, _ in terms for e in m) or any(c.denominator != 1 for _, c in terms):
         return
-    parts = field.factored(_element(field, terms))
-    if len(parts.factors) > 1 or parts.factors[0][1] > 1:
-        weights = [power_of_weight(shortest_sum(field, laurent_of(f)), e) for f, e in parts.factors]
-        yield product_of_weights([Weight(parts.content), *weights])
-
-
-def _element(field: ParameterField, terms: Laurent) -> ParameterPolynomial:
-    total = field.scalar(0)
-    for exponents, coefficient in terms:
-        term = field.scalar(coefficient)
-        for name, exponent in zip(field.parameters, exponents, strict=True):
-            if exponent:
-                term *= field.symbol(name) ** exponent
-        total += term
-    return total
+    number, factors = irreducible_factors(dict(terms))
+    if len(factors) > 1 or factors[0][1] > 1:
+        weights = [
+            power_of_weight(shortest_sum(field, ordered(factor.items())), exponent)
+            for factor, exponent in factors
+        ]
+        yield product_of_weights([Weight(number), *weights])
 
 
 def _is_irreducible(terms: Laurent) -> bool:
@@ -266,7 +260,7 @@ def _squares(field: ParameterField, terms: Laurent) -> Iterator[Weight]:
         ]
         rest = _without_square(terms, inner, sign)
         if len(rest) < len(terms) - 2:
-            square = written(power_of_weight(shortest_sum(field, _ordered(inner)), 2))
+            square = written(power_of_weight(shortest_sum(field, ordered(inner)), 2))
             parts = [square if sign > 0 else Negation(square)]
             parts += [written(shortest_sum(field, rest))] if rest else []
             yield _as_weight(sum_of(parts))
@@ -280,7 +274,7 @@ def _without_square(
         for second, d in inner:
             monomial = tuple(e + f for e, f in zip(first, second, strict=True))
             left[monomial] = left.get(monomial, Fraction(0)) - sign * c * d
-    return _ordered(left.items())
+    return ordered(left.items())
 
 
 def _root(value: Fraction) -> Fraction | None:

@@ -21,8 +21,9 @@ from closedform.notation.parametric_errors import (
     ParameterSizeError,
 )
 from closedform.notation.plain import plain
+from closedform.notation.rational_formula import rational_formula
 
-__all__ = ["element_text", "rational_combination", "rational_value"]
+__all__ = ["rational_combination", "rational_value"]
 
 MOST_TERMS = 100
 """Terms of a numerator or a denominator: common factors of larger ones take seconds to find."""
@@ -76,11 +77,6 @@ def rational_combination(
     Raises:  NonlinearTermError, ConstantTermError, and what `rational_value` raises.
     """
     return combination(expression, states, _Functions(field, meanings), place)
-
-
-def element_text(element: Scalar) -> str:
-    """Return an element in plain notation, as errors quote it."""
-    return str(element).replace("**", "^")
 
 
 class _Functions(Arithmetic[Scalar]):
@@ -138,7 +134,7 @@ class _Functions(Arithmetic[Scalar]):
         return self.field.constant(value)
 
     def text(self, value: Scalar) -> str:
-        return element_text(value)
+        return plain(rational_formula(self.field, value))
 
 
 def _foresee(

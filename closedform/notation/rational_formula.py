@@ -8,18 +8,22 @@ difference where there is one: k2 - k1, and not -(k1 - k2).
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from fractions import Fraction
 from functools import lru_cache
 from itertools import chain, combinations
 from math import prod
+from typing import Any
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import Factored, ParameterField, ParameterPolynomial
+from closedform.algebra.polynomial_factors import irreducible_factors
 from closedform.notation.expression import ZERO, Expression, operations
 from closedform.notation.laurent_sum import (
     Laurent,
     Weight,
     laurent_of,
     monomial_weight,
+    ordered,
     power_of_weight,
     product_of_weights,
     shortest,
@@ -53,7 +57,7 @@ def weighted_rational(
     divisors: Sequence[Expression],
 ) -> Expression:
     """Return value · factors / divisors as one term, its sign outside; `value` is not zero."""
-    return weighted_parts(field, taken_apart(field, value), factors, divisors)
+    return weighted_parts(field, taken_apart(value), factors, divisors)
 
 
 def weighted_parts(
@@ -67,9 +71,26 @@ def weighted_parts(
 
 
 @lru_cache(maxsize=16384)
-def taken_apart(field: ParameterField, element: Scalar) -> Factored:
-    """Return `field.factored(element)`, found once for each element that is not zero."""
-    return field.factored(element)
+def taken_apart(element: Scalar) -> Factored:
+    """Return an element that is not zero by its irreducible factors, simple ones first."""
+    number, powers = Fraction(1), []
+    for polynomial, sign in ((element.numer, 1), (element.denom, -1)):
+        content, factors = irreducible_factors(dict(laurent_of(polynomial)))
+        number *= content**sign
+        powers += [(ordered(factor.items()), exponent * sign) for factor, exponent in factors]
+    powers.sort(key=lambda pair: _simplicity(pair[0]))
+    ring = element.numer.ring
+    return Factored(number, tuple((_polynomial(ring, terms), e) for terms, e in powers))
+
+
+def _simplicity(terms: Laurent) -> tuple[int, int, list[tuple[list[int], Fraction]]]:
+    degree = max(sum(monomial) for monomial, _ in terms)
+    return degree, len(terms), [([-e for e in monomial], c) for monomial, c in terms]
+
+
+def _polynomial(ring: Any, terms: Laurent) -> ParameterPolynomial:
+    one = ring.domain.one
+    return ring.from_dict({m: one * c.numerator / c.denominator for m, c in terms})
 
 
 Powers = tuple[tuple[ParameterPolynomial, int], ...]
@@ -114,7 +135,7 @@ def _multiplied(powers: Powers, exponents: tuple[int, ...], single: Weight) -> L
         (tuple(e + d for e, d in zip(m, exponents, strict=True)), c * single.number)
         for m, c in laurent_of(total)
     )
-    return tuple(sorted(terms, key=lambda t: (sum(map(abs, t[0])), [-e for e in t[0]])))
+    return ordered(terms)
 
 
 def _factored(field: ParameterField, front: Weight, above: Powers, below: Powers) -> Weight:

@@ -92,17 +92,19 @@ def compared(
         bits = min(2 * bits, LIMIT_BITS)
 
 
-def check_of(item: str, findings: Iterable[Finding], agreed: str) -> Check:
+def check_of(
+    item: str, findings: Iterable[Finding], agreed: str, *, essential: bool = True
+) -> Check:
     """Return the first refutation as a check, else the first that was left open, else `agreed`."""
     left_open: Finding | None = None
     for finding in findings:
         if finding.outcome == "refuted":
-            return Check(item, finding.outcome, finding.how)
+            return Check(item, finding.outcome, finding.how, essential)
         if finding.outcome == "not attempted":
             left_open = left_open or finding
     if left_open is not None:
-        return Check(item, left_open.outcome, left_open.how)
-    return Check(item, "enclosed", agreed)
+        return Check(item, left_open.outcome, left_open.how, essential)
+    return Check(item, "enclosed", agreed, essential)
 
 
 def listed(times: Iterable[Fraction]) -> str:

@@ -42,6 +42,7 @@ from closedform.verification.record import Check
 __all__ = ["NamedValues", "certified_discs", "eigenvalue_check", "name_check"]
 
 _LIMIT_BITS_FOR_ORDER = 1 << 12
+_MOST_NAMED = 4
 
 
 @dataclass(frozen=True)
@@ -182,7 +183,7 @@ def _numbers_of(modes: tuple[Mode, ...], values: dict[str, arb]) -> Iterator[acb
 
 
 def _named_roots(response: Response, p: Polynomial, named: list[NamedConstant]) -> Finding:
-    base, names = response.field, ", ".join(c.name for c in named)
+    base, names = response.field, _listed(named)
     if all(p != factor.p for factor in response.spectrum.factors):
         return Finding("refuted", f"{names}: defined by a polynomial that is no factor")
     for constant in named:
@@ -206,6 +207,13 @@ def _named_roots(response: Response, p: Polynomial, named: list[NamedConstant]) 
     return Finding(
         "not attempted", f"{names}: roots are not put in order by {_LIMIT_BITS_FOR_ORDER} bits"
     )
+
+
+def _listed(named: Sequence[NamedConstant]) -> str:
+    """The first names, and how many there are: a polynomial of degree six may have fifty."""
+    shown = ", ".join(c.name for c in named[:_MOST_NAMED])
+    further = len(named) - _MOST_NAMED
+    return f"{shown} and {further} more" if further > 0 else shown
 
 
 def _line_of_symmetry(base: BaseField, p: Polynomial) -> object | None:

@@ -52,7 +52,8 @@ def verify(response: Response) -> VerificationRecord:
     """Return what can be said of a response: exact identities, then certified comparisons.
 
     Every check is made, whatever came of the others.  `holds` of the record says that none
-    was refuted; each check names its identity, the outcome, and how it was found.
+    was refuted and none that is essential left open; each check names its identity, the
+    outcome, and how it was found.
     """
     times = trial_times(response)
     references = References(response, times)

@@ -18,17 +18,26 @@ from closedform.document.engine import NoTexEngineError, available_engines
 from closedform.document.files import CannotWriteError
 from closedform.errors import ClosedformError, InputError
 from closedform.response.response import Response
-from closedform.verification.record import Check, ResponseRefutedError, VerificationRecord
+from closedform.verification.record import (
+    Check,
+    ResponseRefutedError,
+    UnprovedError,
+    VerificationRecord,
+)
 from closedform.verification.verify import verify
 from tests.cli.commanding import everything, run
 
 HACK = "__import__('os').system('touch hacked')"
 
 
+OPEN = Check("formulas as written", "not attempted", "state m1 is not settled by 32768 bits")
+
+
 def refuse(response: Response) -> VerificationRecord:
     if response.model.name == "wrong":
         return VerificationRecord((Check("x(0) = x0", "refuted", "entry 2 is 1, not 0"),))
-    return verify(response)
+    record = verify(response)
+    return VerificationRecord((*record.checks, OPEN)) if response.model.name == "wide" else record
 
 
 @pytest.fixture
@@ -64,6 +73,42 @@ def test_one_model_that_fails_does_not_stop_the_others_and_the_worst_counts(
         "wrong",
     ]
     assert "out/tank.tex" in everything(tmp_path)
+
+
+@pytest.fixture
+def wide(tank: Path, monkeypatch: pytest.MonkeyPatch) -> Path:
+    """A model whose result is not settled."""
+    monkeypatch.setattr("closedform.document.writeup.verify", refuse)
+    path = tank.with_name("wide.toml")
+    path.write_bytes(tank.read_bytes())
+    return path
+
+
+@pytest.mark.usefixtures("wide")
+def test_a_result_that_is_not_proved_gives_status_2_and_writes_nothing(
+    runner: CliRunner, tmp_path: Path
+) -> None:
+    done = runner.invoke(app, ["writeup", "wide.toml", "--pdf"])
+    assert done.exit_code == 2
+    assert done.stdout == ""
+    assert done.stderr == f"error: {UnprovedError('wide', (OPEN,))}\n"
+    assert everything(tmp_path) == ["tank.toml", "wide.toml"]
+
+
+@pytest.mark.usefixtures("wide")
+def test_the_batch_goes_on_after_a_result_that_is_not_proved(
+    runner: CliRunner, tmp_path: Path
+) -> None:
+    done = runner.invoke(app, ["writeup", "wide.toml", "tank.toml"])
+    assert done.exit_code == 2
+    assert done.stdout == "out/tank.tex\nout/tank.record.json\n"
+    assert done.stderr.startswith("error: wide: the result could not be proved")
+    assert everything(tmp_path / "out") == ["tank.record.json", "tank.tex"]
+
+
+@pytest.mark.usefixtures("wide", "wrong")
+def test_a_refuted_result_is_worse_than_one_that_is_not_proved(runner: CliRunner) -> None:
+    assert runner.invoke(app, ["writeup", "wide.toml", "wrong.toml"]).exit_code == 1
 
 
 @pytest.mark.usefixtures("tank")
@@ -103,6 +148,7 @@ def test_refuted_is_worse_than_unusable_is_worse_than_missing(
 def test_every_branch_of_the_errors_has_a_status() -> None:
     assert status_of(ResponseRefutedError("a", ())) == 1
     assert status_of(CannotWriteError("a", "b")) == 2
+    assert status_of(UnprovedError("a", ())) == 2
     assert status_of(NoTexEngineError()) == 3
     with pytest.raises(ClosedformError, match="of no branch"):
         status_of(ClosedformError("of no branch"))

@@ -27,17 +27,28 @@ from closedform.derivation import (
     spectrum_steps,
 )
 from closedform.derivation.build import derive
+from closedform.derivation.proof import statements
 from closedform.derivation.proof.finding import Comparison, StatementRefutedError, decimal_of
 from closedform.derivation.proof.statements import prove_statements
 from closedform.derivation.step import Matrix, Step, Symbol
 from closedform.errors import RefutedError
-from closedform.notation.expression import Name, Negation, number
-from closedform.verification import verify
+from closedform.notation.expression import (
+    Call,
+    Expression,
+    Name,
+    Negation,
+    Quotient,
+    Sum,
+    number,
+)
+from closedform.response.response import Response
+from closedform.verification import Check, UnprovedError, verify
 from tests.derivation.test_canonical_steps import SURDS
 from tests.derivation.test_resolvent_steps import REPEATED
 from tests.derivation.test_spectrum_steps import UNDAMPED
 from tests.derivation.values import derivation_of, responded
 from tests.response.systems import KINDS, response_to
+from tests.verification.tampering import with_formula
 from tests.verification.test_comparison import CLOSE
 
 # --- what is true is proved ----------------------------------------------------------------
@@ -48,7 +59,7 @@ from tests.verification.test_comparison import CLOSE
 def test_every_kind_of_derivation_is_proved(kind: str, digits: int) -> None:
     last = derivation_of(response_to(kind), digits).checks[-1]
     assert (last.item, last.outcome) == ("statements of the derivation", "enclosed")
-    assert "open" not in last.how
+    assert "too small" not in last.how
 
 
 FURTHER: dict[str, list[list[Any]]] = {
@@ -68,7 +79,7 @@ FURTHER: dict[str, list[list[Any]]] = {
 def test_further_derivations_are_proved(name: str) -> None:
     last = derivation_of(responded(FURTHER[name])).checks[-1]
     assert last.outcome == "enclosed"
-    assert "open" not in last.how
+    assert "too small" not in last.how
 
 
 @pytest.mark.parametrize("name", CLOSE)
@@ -77,13 +88,28 @@ def test_close_eigenvalues_are_told_apart(name: str) -> None:
     assert prove_statements(response, tuple(build._steps(response, 6)), 6).outcome == "enclosed"
 
 
-def test_a_value_beyond_reach_is_counted_as_open() -> None:
-    """Of x2 = e^(-t) nothing is left beside e^(t) at time 10^5, in the exponential of balls."""
-    model = closedform.system([[0, 1], [1, 0]], initial=[1, -1], times=["100000"])
-    response = closedform.respond(model)
+def saddle() -> Response:
+    """Of x1 = e^(-t) nothing is left beside e^(t) at time 10^5, in the exponential of balls."""
+    model = closedform.system([[0, 1], [1, 0]], initial=[1, -1], times=["0", "100000"])
+    return closedform.respond(model)
+
+
+def test_values_lost_in_the_matrix_exponential_are_proved_by_their_formulas() -> None:
+    response = saddle()
     last = derive(response, verify(response)).checks[-1]
     assert last.outcome == "enclosed"
-    assert "2 values in the table stay open" in last.how
+    assert last.how.endswith(
+        "; 2 values, too small beside others for that, agree with the formulas of the result"
+    )
+
+
+def test_a_fast_difference_beside_slow_states_is_proved() -> None:
+    """At the instants chosen for the slow mode nothing is left of the fast one."""
+    half, small = Fraction(1, 2), Fraction(1, 2000)
+    rows = [[-1000 * half - small, 1000 * half - small], [1000 * half - small, -500 - small]]
+    model = closedform.system(rows, initial=[1, -1], outputs={"d": "x1 - x2"})
+    response = closedform.respond(model)
+    assert derive(response, verify(response)).checks[-1].outcome == "enclosed"
 
 
 # --- what is false is refused --------------------------------------------------------------
@@ -179,6 +205,18 @@ def table_changed(original: Any) -> Callable[..., Any]:
     def wrong(*args: Any, **named: Any) -> Any:
         rows = original(*args, **named)
         rows[-1][0] = off_by_one(rows[-1][0])
+        return rows
+
+    return wrong
+
+
+def last_changed(original: Any) -> Callable[..., Any]:
+    """The first value at the last instant is doubled."""
+
+    def wrong(*args: Any, **named: Any) -> Any:
+        rows = original(*args, **named)
+        mantissa, mark, power = rows[-1][0].partition("e")
+        rows[-1][0] = f"{Decimal(mantissa) * 2}{mark}{power}"
         return rows
 
     return wrong
@@ -287,6 +325,76 @@ def test_nothing_is_written_when_a_statement_is_refuted(
     monkeypatch.setattr(result_steps, "sampled", table_changed(result_steps.sampled))
     with pytest.raises(StatementRefutedError, match=r"value of x1 at .*printed is"):
         closedform.write_up(response_to("circular").model, into=tmp_path / "new")
+    assert list(tmp_path.iterdir()) == []
+
+
+def test_a_wrong_value_lost_in_the_matrix_exponential_is_refuted(
+    monkeypatch: pytest.MonkeyPatch,
+) -> None:
+    response = saddle()
+    record = verify(response)
+    monkeypatch.setattr(result_steps, "sampled", last_changed(result_steps.sampled))
+    with pytest.raises(StatementRefutedError, match="value of x1 at 100000"):
+        derive(response, record)
+
+
+# --- what is not settled is not issued -----------------------------------------------------
+
+
+def too_wide(formula: Expression) -> Expression:
+    """The same number, from two that are equal in their first 86000 bits."""
+    large = Call("exp", Call("exp", number(11)))
+    return Sum((formula, large, Negation(large)))
+
+
+def test_a_statement_that_no_precision_settles_is_left_open() -> None:
+    def widened(step: Step) -> Step:
+        first, *others = step.statements
+        symbol, formula = first.sides
+        return replace(
+            step, statements=(replace(first, sides=(symbol, too_wide(formula))), *others)
+        )
+
+    response = response_to("circular")
+    with pytest.raises(UnprovedError, match="Left open: solution of state x1: not") as caught:
+        prove_statements(response, steps_with("circular", "solution", widened), 6)
+    assert caught.value.model == response.model.name
+    assert caught.value.left_open == (
+        Check("solution of state x1", "not attempted", "not settled by 16384 bits"),
+    )
+
+
+def test_a_statement_without_a_value_is_refuted() -> None:
+    response = response_to("circular")
+    root = Call("sqrt", number(-1))
+    nothing = Quotient(root, Sum((root, Negation(root))))
+
+    def emptied(step: Step) -> Step:
+        return with_first(sides=(step.statements[0].sides[0], nothing))(step)
+
+    steps = steps_with("circular", "solution", emptied)
+    with pytest.raises(StatementRefutedError, match="it has no value, worked to 16384 bits"):
+        prove_statements(response, steps, 6)
+
+
+def test_a_value_that_no_way_settles_is_left_open() -> None:
+    response = saddle()
+    steps = tuple(build._steps(response, 6))
+    formula = response.closed_forms.solution[1]
+    wide = with_formula(response, "solution", 1, too_wide(formula))
+    with pytest.raises(UnprovedError) as caught:
+        prove_statements(wide, steps, 6)
+    assert [check.item for check in caught.value.left_open] == ["value of x2 at 100000"]
+
+
+def test_nothing_is_written_when_a_statement_is_left_open(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.setattr(statements, "_FIRST_BITS", 16)
+    monkeypatch.setattr(statements, "_MOST_BITS", 16)
+    model = closedform.system([[0, 1], [-5, -2]], initial=[1, 0])
+    with pytest.raises(UnprovedError, match="not settled by 16 bits"):
+        closedform.write_up(model, into=tmp_path / "new")
     assert list(tmp_path.iterdir()) == []
 
 

@@ -7,7 +7,8 @@ from closedform.derivation.proof.rewriting import require_equal
 from closedform.derivation.step import Matrix
 from closedform.document import matrices
 from closedform.document.matrices import matrix_box, matrix_height, with_front
-from closedform.notation.expression import Product, number
+from closedform.notation.expression import Call, Product, Quotient, number
+from closedform.verification.record import UnprovedError
 from tests.document.making import T, add, column, exp, matrix, neg, prod, q
 
 
@@ -47,6 +48,22 @@ def test_matrices_are_equal_as_values_of_every_name() -> None:
     for other in (matrix(("a",)), matrix(("a", "b")), matrix((prod("a", "a"),))):
         with pytest.raises(StatementRefutedError):
             require_equal(other, matrix(("b",)))
+
+
+def test_matrices_are_compared_as_finely_as_their_numbers_ask_for() -> None:
+    large = number(10**900)
+    same = Matrix(((add(large, "a", neg(large)),),))
+    require_equal(same, matrix(("a",)))
+    with pytest.raises(StatementRefutedError):
+        require_equal(same, matrix((add("a", "1/1000000000"),)))
+
+
+def test_a_matrix_that_no_precision_settles_is_left_open_and_not_refuted() -> None:
+    large = Call("exp", Call("exp", number(11)))
+    with pytest.raises(UnprovedError, match=r"entry \(1, 1\): not settled by 16384 bits"):
+        require_equal(Matrix(((add("a", large, neg(large)),),)), matrix(("a",)))
+    with pytest.raises(StatementRefutedError, match="it has no value"):
+        require_equal(matrix((Quotient(q("a"), number(0)),)), matrix(("a",)))
 
 
 def test_what_is_not_shared_stays() -> None:

@@ -76,3 +76,72 @@ def test_a_key_itself_is_found() -> None:
 
 def test_without_a_text_places_name_keys_only() -> None:
     assert Source(Place(key="plant")).at("matrix[1][2]") == Place(key="plant.matrix[1][2]")
+
+
+NESTED = """\
+conditions = ["a < b",
+  'b < c']
+rows = [{label = "x", k = 1}, { "m" = [3, "4"], k=2 }]
+parameters.q.assume = "real"
+[parameters.k]  # stiffness
+value = 3
+[ parameters . "m" ]
+assume = "positive"
+value = 2
+[parameters]
+c = {assume = "positive", value = 4}
+[[values]]
+k = 1
+[[values]]
+k = 2
+[values.inner]
+k = 3
+"""
+
+INSIDE = [
+    ("conditions[2]", 2, 3, "'b < c'"),
+    ("parameters.k.value", 6, 9, "3"),
+    ("parameters.m.value", 9, 9, "2"),
+    ("parameters.c", 11, 5, "{assume"),
+    ("parameters.c.value", 11, 35, "4"),
+    ("parameters.q.assume", 4, 23, '"real"'),
+    ("rows[2].m", 3, 39, "[3"),
+    ("rows[2].m[2]", 3, 43, '"4"'),
+    ("rows[2].k", 3, 51, "2"),
+    ("values[1].k", 13, 5, "1"),
+    ("values[2].k", 15, 5, "2"),
+]
+
+
+@pytest.mark.parametrize(("key", "line", "column", "start"), INSIDE)
+def test_what_stands_in_a_table_of_tables_is_found(
+    key: str, line: int, column: int, start: str
+) -> None:
+    place = Source(Place("bench.toml"), NESTED).at(key)
+    assert place == Place("bench.toml", key, line, column, NESTED.split("\n")[line - 1])
+    assert place.excerpt is not None
+    assert place.excerpt[column - 1 :].startswith(start)
+
+
+@pytest.mark.parametrize(
+    "key", ["parameters.k.assume", "parameters.c.unit", "rows[1].m", "values[3].k", "values[1].m"]
+)
+def test_what_is_not_in_a_table_of_tables_has_no_line(key: str) -> None:
+    assert Source(Place("bench.toml"), NESTED).at(key) == Place("bench.toml", key)
+
+
+HEADINGS = [
+    ("parameters.k", 5, 13),
+    ("parameters.m", 7, 16),
+    ("parameters.c", 11, 1),
+    ("parameters.c.value", 11, 27),
+    ("values[2]", 14, 3),
+    ("values", 12, 3),
+    ("parameters.q.assume", 4, 1),
+]
+
+
+@pytest.mark.parametrize(("key", "line", "column"), HEADINGS)
+def test_a_heading_is_found(key: str, line: int, column: int) -> None:
+    place = Source(Place("bench.toml"), NESTED).at_name(key)
+    assert (place.line, place.column) == (line, column)

@@ -26,7 +26,7 @@ from closedform.notation.parametric_errors import (
     ParameterRootError,
     ParameterSizeError,
 )
-from closedform.notation.rational import element_text, rational_combination, rational_value
+from closedform.notation.rational import rational_combination, rational_value
 from tests.notation.formulas import HERE, NUMBERS, read, whole
 from tests.notation.formulas import rational_value as by_fractions
 
@@ -192,7 +192,3 @@ def test_what_is_not_linear_is_refused(text: str, error: type[FormulaError], wor
         rational_combination(read(text, *NAMES, *STATES, "t"), STATES, FIELD, HERE)
     assert words in str(caught.value)
     assert caught.value.place == HERE
-
-
-def test_an_element_is_quoted_in_plain_notation() -> None:
-    assert element_text(A**2 / (B - 1)) == "a^2/(b - 1)"

@@ -21,6 +21,7 @@ from closedform.verification.comparison import (
     compared,
     is_narrow,
 )
+from closedform.verification.record import Outcome
 from tests.verification.tampering import with_formula, with_transition_entry
 
 
@@ -102,6 +103,14 @@ def test_a_refutation_counts_even_after_something_was_left_open() -> None:
     assert check_of("x", [equal, wide, apart], "fine") == Check("x", "refuted", "apart")
     assert check_of("x", [equal, wide, equal], "fine") == Check("x", "not attempted", "wide")
     assert check_of("x", [equal, equal], "fine") == Check("x", "enclosed", "fine")
+
+
+@pytest.mark.parametrize("outcome", ["enclosed", "refuted", "not attempted"])
+def test_a_check_is_essential_unless_it_says_otherwise(outcome: Outcome) -> None:
+    findings = [Finding(outcome, "so")]
+    assert check_of("x", findings, "so") == Check("x", outcome, "so", essential=True)
+    spared = check_of("x", findings, "so", essential=False)
+    assert spared == Check("x", outcome, "so", essential=False)
 
 
 # --- eigenvalues so close that a fixed precision does not tell them apart --------------------

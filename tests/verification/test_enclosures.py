@@ -70,6 +70,18 @@ def test_mpmath_is_not_asked_beyond_its_size_and_the_record_says_so() -> None:
     response = closedform.respond(closedform.system(chain, initial=[1] * n))
     check = mpmath_check(response, (Fraction(1),))
     assert (check.outcome, check.how) == ("not attempted", "done up to 12 states")
+    record = verify(response)
+    assert check.item in {c.item for c in record.checks if c.outcome == "not attempted"}
+    assert record.holds
+    assert record.left_open == ()
+
+
+def test_only_what_is_proved_exactly_already_may_stay_open() -> None:
+    checks = verify(response_to("mixed")).checks
+    assert [check.item for check in checks if not check.essential] == [
+        "det e^(At), numbers",
+        "e^(At), second opinion",
+    ]
 
 
 def test_a_record_is_the_same_every_time() -> None:

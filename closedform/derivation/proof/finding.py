@@ -18,6 +18,7 @@ __all__ = [
     "agreeing",
     "decimal_of",
     "number_in",
+    "undecided",
     "whether",
 ]
 
@@ -74,6 +75,11 @@ class Comparison:
         return bool(abs(self.printed - self.expected) > self.margin)
 
     @property
+    def has_no_value(self) -> bool:
+        """Whether what is printed has no finite ball, as the root of a negative number has none."""
+        return not self.printed.is_finite()
+
+    @property
     def is_settled(self) -> bool:
         """Whether both balls are narrow, so that meeting means something."""
         if self.margin is not None:
@@ -108,6 +114,11 @@ def whether(holds: bool, place: str, reason: str) -> Iterator[Finding]:  # noqa:
     """Yield a fault unless something holds."""
     if not holds:
         yield Fault(place, reason)
+
+
+def undecided(place: str) -> Comparison:
+    """Return what only a finer look can tell."""
+    return Comparison(place, acb(0), acb("nan"))
 
 
 def agreeing(place: str, printed: acb_mat, expected: acb_mat) -> Iterator[Finding]:

@@ -7,15 +7,29 @@ from collections.abc import Iterator
 from flint import acb, acb_mat, arb
 
 from closedform.algebra.enclosure import ball_of
+from closedform.algebra.surds import SurdSum
 from closedform.derivation.proof.evaluation import ball_at, exact_at
-from closedform.derivation.proof.finding import Comparison, Fault, Finding, decimal_of, whether
+from closedform.derivation.proof.finding import (
+    Comparison,
+    Fault,
+    Finding,
+    decimal_of,
+    undecided,
+    whether,
+)
 from closedform.derivation.proof.ground import Ground, Instant, rows_of
 from closedform.derivation.proof.spectrum import formula_in
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.notation import read_formula
 from closedform.notation.expression import Name
 
-__all__ = ["constant_rows", "function_statement", "shown_functions", "value_rows"]
+__all__ = [
+    "constant_rows",
+    "function_statement",
+    "shown_functions",
+    "value_rows",
+    "values_by_formula",
+]
 
 
 def function_statement(ground: Ground, statement: Statement) -> Iterator[Finding]:
@@ -79,7 +93,7 @@ def constant_rows(ground: Ground, step: Step) -> Iterator[Finding]:
         balls = factors[int(row["factor"]) - 1].roots.enclosures()
         met = [ball for ball in balls if ball.overlaps(root)]
         if len(met) > 1:
-            yield Comparison(place, root, acb("nan"))  # a finer look has to tell them apart
+            yield undecided(place)
             continue
         if not met or numerator is None:
             yield Fault(place, "a constant is not at a zero of the factor named")
@@ -105,9 +119,7 @@ def constant_rows(ground: Ground, step: Step) -> Iterator[Finding]:
 def value_rows(ground: Ground, step: Step) -> Iterator[Finding]:
     """Every value, against the matrix exponential at its instant; and the instants."""
     model = ground.response.model
-    header = step.facts["header"]
-    if not isinstance(header, list):
-        raise TypeError("the table of values has no head")
+    header = _head(step)
     names = [_called(ground, side) for side in header[1:]]
     yield from whether(
         header[0] == Name(model.time) and None not in names and len(set(names)) == len(names),
@@ -116,19 +128,49 @@ def value_rows(ground: Ground, step: Step) -> Iterator[Finding]:
     )
     times = []
     for text, *values in rows_of(step):
-        time = exact_at(formula_in(read_formula(text, names=frozenset())), {})
+        time = _time(text)
         times.append(time)
         instant = ground.instant(acb(ball_of(time)))
         expected = _functions(ground, instant)
         scale = _size(instant.transition) * (1 + _size(ground.initial))
         for name, value in zip(names, values, strict=True):
             if name is not None:
-                yield decimal_of(
-                    f"value of {name} at {text}", value, expected[name], ground.digits, scale
-                )
+                yield decimal_of(_place(name, text), value, expected[name], ground.digits, scale)
     yield from whether(
         not model.times or tuple(times) == model.times, "table of values", "the times are others"
     )
+
+
+def values_by_formula(ground: Ground, step: Step) -> Iterator[Finding]:
+    """Every value, against the formula of its state or output, which was proved before.
+
+    Of a small value beside a huge one nothing may be left in the matrix exponential.
+    """
+    model, forms = ground.response.model, ground.response.closed_forms
+    formulas = dict(zip(model.states, forms.solution, strict=True))
+    formulas |= {o.name: f for o, f in zip(model.outputs, forms.outputs, strict=True)}
+    called = [_called(ground, side) for side in _head(step)[1:]]
+    for text, *values in rows_of(step):
+        names = ground.names | {model.time: acb(ball_of(_time(text)))}
+        for name, value in zip(called, values, strict=True):
+            if name is not None:
+                expected = ball_at(formulas[name], names)
+                yield decimal_of(_place(name, text), value, expected, ground.digits)
+
+
+def _head(step: Step) -> list[Side]:
+    header = step.facts["header"]
+    if not isinstance(header, list):
+        raise TypeError("the table of values has no head")
+    return header
+
+
+def _place(name: str, text: str) -> str:
+    return f"value of {name} at {text}"
+
+
+def _time(text: str) -> SurdSum:
+    return exact_at(formula_in(read_formula(text, names=frozenset())), {})
 
 
 def _size(matrix: acb_mat) -> arb:

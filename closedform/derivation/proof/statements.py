@@ -12,17 +12,23 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Sequence
 
-from flint import acb, ctx
+from flint import ctx
 
 from closedform.derivation.proof import forms, resolvent, results, spectrum
 from closedform.derivation.proof.evaluation import expressions_in, names_in
-from closedform.derivation.proof.finding import Comparison, Fault, Finding, StatementRefutedError
+from closedform.derivation.proof.finding import (
+    Comparison,
+    Fault,
+    Finding,
+    StatementRefutedError,
+    undecided,
+)
 from closedform.derivation.proof.ground import Ground, letters_in, rows_of
 from closedform.derivation.step import IMAGINARY_UNIT, Statement, Step
 from closedform.notation.expression import Name
 from closedform.response.response import Response
 from closedform.verification.enclosures import trial_times
-from closedform.verification.record import Check
+from closedform.verification.record import Check, UnprovedError
 
 __all__ = ["prove_statements"]
 
@@ -67,7 +73,9 @@ _WITHIN = {
 }
 """A definition is proved where it is used: by which statement of the same step."""
 
-_FACTS: dict[str, Callable[[Ground, Step], Iterator[Finding]]] = {
+_Facts = dict[str, Callable[[Ground, Step], Iterator[Finding]]]
+
+_FACTS: _Facts = {
     "eigenvalues": spectrum.eigenvalue_rows,
     "named_roots": spectrum.root_rows,
     "eigenvectors": forms.eigenvector_facts,
@@ -76,6 +84,9 @@ _FACTS: dict[str, Callable[[Ground, Step], Iterator[Finding]]] = {
     "abbreviations": results.constant_rows,
     "values": results.value_rows,
 }
+
+_OTHERWISE: _Facts = {"values": results.values_by_formula}
+"""A second way to prove what a table holds, for entries that the first leaves open."""
 
 _VARIABLES = {
     "characteristic_polynomial": {"lambda"},
@@ -91,54 +102,71 @@ def prove_statements(response: Response, steps: Sequence[Step], digits: int) -> 
     `digits` are the significant digits that the tables were asked for.
 
     Raises:  StatementRefutedError for the first that does not hold, or of which a name or
-             a letter is not defined; ValueError for a kind of statement that nothing proves.
+             a letter is not defined; UnprovedError if there is none, but some are left open;
+             ValueError for a kind of statement that nothing proves.
     """
     for finding in _undefined(response, steps):
         raise StatementRefutedError(response.model.name, finding.place, finding.reason)
     times = trial_times(response)
     ground = Ground(response, steps, digits, (times[0], times[2]))
-    open_ = 0
-    for kinds in ({step.kind for step in steps} - {"values"}, {"values"}):
-        open_ += _settled(ground, [step for step in steps if step.kind in kinds])
+    tables = [step for step in steps if step.kind in _OTHERWISE]
+    _require(response, _left_open(ground, [step for step in steps if step not in tables]))
+    first = _left_open(ground, tables)
+    if first:
+        second = _left_open(ground, tables, _OTHERWISE)
+        _require(response, [place for place in first if place in second])
     statements = sum(len(step.statements) for step in steps)
-    left = f"; {open_} values in the table stay open, for the size of others" if open_ else ""
+    further = (
+        f"; {len(first)} values, too small beside others for that, agree with the formulas of "
+        "the result"
+    )
     return Check(
         "statements of the derivation",
         "enclosed",
         f"{statements} displayed statements and all decimals in tables were evaluated from what "
         "is printed; they agree with the model, the isolated eigenvalues and the matrix "
-        f"exponential of ball arithmetic{left}",
+        f"exponential of ball arithmetic{further if first else ''}",
     )
 
 
-def _settled(ground: Ground, steps: Sequence[Step]) -> int:
-    """Prove some steps, more and more finely; return how many values are open in the end."""
+def _require(response: Response, left_open: Sequence[str]) -> None:
+    """Raise UnprovedError if something is left open, by place."""
+    if left_open:
+        how = f"not settled by {_MOST_BITS} bits"
+        checks = (Check(place, "not attempted", how) for place in left_open)
+        raise UnprovedError(response.model.name, tuple(checks))
+
+
+def _left_open(ground: Ground, steps: Sequence[Step], facts: _Facts = _FACTS) -> list[str]:
+    """Prove some steps, more and more finely; return the places that are open in the end."""
     bits = _FIRST_BITS
     while True:
         with ctx.workprec(bits):
-            wide = list(_wide(ground.afresh(), steps))
+            wide = list(_wide(ground.afresh(), steps, facts))
         if not wide:
-            return 0
+            return []
         if bits >= _MOST_BITS:
             break
-        bits *= 2
+        bits = min(2 * bits, _MOST_BITS)
     for comparison in wide:
-        if comparison.scale is None and comparison.margin is None:
+        if comparison.has_no_value:
             raise StatementRefutedError(
-                ground.response.model.name, str(comparison), "it has no certain value"
+                ground.response.model.name,
+                str(comparison),
+                f"it has no value, worked to {bits} bits",
             )
-    return len(wide)
+    return list(dict.fromkeys(map(str, wide)))
 
 
-def _wide(ground: Ground, steps: Sequence[Step]) -> Iterator[Comparison]:
+def _wide(ground: Ground, steps: Sequence[Step], facts: _Facts) -> Iterator[Comparison]:
     """Return the comparisons that this precision does not settle.
 
     Raises StatementRefutedError at the first thing that certainly is wrong.
     """
     if ground.is_coarse:
-        yield Comparison("eigenvalues", acb("nan"), acb("nan"))
+        yield undecided("eigenvalues")
         return
-    for finding in _findings(ground, steps):
+    for finding in _findings(ground, steps, facts):
         if isinstance(finding, Fault):
             raise StatementRefutedError(ground.response.model.name, finding.place, finding.reason)
         if finding.is_apart:
@@ -151,14 +179,14 @@ def _wide(ground: Ground, steps: Sequence[Step]) -> Iterator[Comparison]:
             yield finding
 
 
-def _findings(ground: Ground, steps: Sequence[Step]) -> Iterator[Finding]:
+def _findings(ground: Ground, steps: Sequence[Step], facts: _Facts) -> Iterator[Finding]:
     for step in steps:
         for statement in step.statements:
             if statement.relation != "=":
                 yield Fault(statement.says, f"the relation is {statement.relation}")
             yield from _about(ground, step, statement)
-        if step.kind in _FACTS:
-            yield from _FACTS[step.kind](ground, step)
+        if step.kind in facts:
+            yield from facts[step.kind](ground, step)
 
 
 def _about(ground: Ground, step: Step, statement: Statement) -> Iterator[Finding]:

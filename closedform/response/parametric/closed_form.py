@@ -83,7 +83,7 @@ def fronted_matrix(
         shared = [_exponential(field, rate, time)]
         kept = [[_without_rate(field, terms) for terms in row] for row in kept]
         forms.append((shared[0], _written_rows(field, kept, time)))
-    amounts = [taken_apart(field, term.amount) for term in everything]
+    amounts = [taken_apart(term.amount) for term in everything]
     for front in fronts_of(amounts, few=True):
         if front != UNIT:
             scale = 1 / field.product_of(front)
@@ -157,7 +157,7 @@ def _groups(field: ParameterField, terms: Sequence[Term], time: str) -> tuple[_G
         if term.kernel is not None and term.frequency:
             argument = weighted_rational(field, term.frequency, [Name(time)], [])
             kernel = Call(term.kernel, argument)
-        part = _Part(taken_apart(field, term.amount), term.power, kernel)
+        part = _Part(taken_apart(term.amount), term.power, kernel)
         found.setdefault(term.rate, []).append(part)
     return tuple(
         _Group(_exponential(field, rate, time) if rate else None, tuple(parts))

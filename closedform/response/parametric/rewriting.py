@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
+from functools import lru_cache
 from itertools import product
 from math import prod
 from typing import Literal
@@ -206,8 +207,11 @@ def _rewritten(
     return term
 
 
+@lru_cache(maxsize=16384)
 def _substituted(field: ParameterField, element: Scalar, rewriting: Rewriting) -> Scalar:
     """Return the element without the parameter.  Raises ArithmeticError if it became another."""
+    if rewriting.parameter not in field.names_in(element):
+        return element
     changed = field.substituted(element, {rewriting.parameter: rewriting.replacement})
     if _restored(field, changed - element, rewriting):
         raise ArithmeticError(f"{rewriting} changes {element}")
