@@ -84,7 +84,7 @@ def _solved(field: ParameterField, conditions: Sequence[Comparison]) -> dict[str
     for condition in conditions:
         if condition.relation != "=":
             continue
-        element = condition.element
+        element = field.of_polynomial(condition.element.numer)
         for name, value in solved.items():
             element = field.substituted(element, {name: value})
         if not element:
