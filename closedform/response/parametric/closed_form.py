@@ -165,11 +165,13 @@ def _groups(field: ParameterField, terms: Sequence[Term], time: str) -> tuple[_G
     )
 
 
-def _written(field: ParameterField, groups: Sequence[_Group], time: str) -> Expression:
+def _written(
+    field: ParameterField, groups: Sequence[_Group], time: str, *, few: bool = False
+) -> Expression:
     if len(groups) == 1:
         return _written_group(field, groups[0], time)
     forms = []
-    for front in fronts_of([part.amount for group in groups for part in group.parts]):
+    for front in fronts_of([part.amount for group in groups for part in group.parts], few=few):
         inside = _sum(field, [_divided(group, front) for group in groups], time)
         forms.append(inside if front == UNIT else _product(field, front, [], inside))
     return shortest_formula(forms, places_of(field.parameters))
@@ -180,7 +182,7 @@ def _sum(field: ParameterField, groups: Sequence[_Group], time: str) -> Expressi
     forms = [sum_of([_written_group(field, group, time) for group in groups])]
     for sharing in _sharing(groups) if len(groups) > 2 else ():
         others = [group for group in groups if group not in sharing]
-        both = [_written(field, part, time) for part in (sharing, others)]
+        both = [_written(field, part, time, few=True) for part in (sharing, others)]
         forms.append(sum_of(both if groups[0] in sharing else both[::-1]))
     return shortest_formula(forms, places_of(field.parameters))
 

@@ -77,9 +77,17 @@ def separated(
     """Return the terms with each of the names in turn, and those without any of them."""
     parts, rest = [], tuple(terms)
     for name in names:
-        without = {name: field.scalar(0)}
-        left = [field.substituted(term.amount, without) for term in rest]
+        left = [_without(field, term.amount, name) for term in rest]
         pairs = list(zip(rest, left, strict=True))
         parts.append(tuple(replace(t, amount=t.amount - r) for t, r in pairs if t.amount != r))
         rest = tuple(replace(t, amount=r) for t, r in pairs if r)
     return [*parts, rest]
+
+
+def _without(field: ParameterField, element: Scalar, name: str) -> Scalar:
+    """Return an element at 0 of a parameter that does not stand below."""
+    place = field.parameters.index(name)
+    kept = {m: c for m, c in element.numer.iterterms() if not m[place]}
+    if len(kept) == len(element.numer):
+        return element
+    return field.of_polynomial(element.numer.ring.from_dict(kept)) / element.denom
