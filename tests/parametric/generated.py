@@ -231,8 +231,8 @@ def _blocks(draw: st.DrawFn, largest: int, with_quadratic: st.SearchStrategy[boo
 
 @st.composite
 def generated_models(draw: st.DrawFn, largest: int = 4) -> GeneratedModel:
-    """Models of order 1 to `largest` with one to four parameters, at most one quadratic."""
-    rest = draw(st.integers(1, largest))
+    """Models of order 2 to `largest` with one to four parameters, at most one quadratic."""
+    rest = draw(st.integers(2, largest))
     n, blocks, quadratic = rest, [], False
     while rest:
         once = st.just(value=False) if quadratic else st.booleans()

@@ -20,11 +20,14 @@ from tests.parametric.plain_reader import Number, ball_of, names_in, parse, valu
 __all__ = [
     "DisagreementError",
     "NotCoveredError",
+    "check_names",
     "check_record",
     "covering_cases",
+    "evaluated_texts",
     "holds",
     "names_at",
     "parameter_values",
+    "solution_at",
     "transition_at",
     "transition_by_balls",
 ]
@@ -317,3 +320,15 @@ def check_names(record: Record) -> None:
         strange = names_in(parse(text)) - allowed
         if strange:
             raise DisagreementError(f"{text!r} uses {', '.join(sorted(strange))}")
+
+
+def solution_at(record: Record, number: int, values: Values, time: Number) -> list[arb]:
+    """Return what a case says of x(t), at the working precision."""
+    case = record["cases"][number]
+    at = {**names_at(case, values), record.get("time", "t"): time}
+    return [ball_of(_evaluated(text, at)) for text in case["solution"]]
+
+
+def evaluated_texts(texts: Iterable[str], values: Values) -> list[Number]:
+    """Return what formulas of the parameters say at these values."""
+    return [_evaluated(text, values) for text in texts]
