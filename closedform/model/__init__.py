@@ -2,6 +2,7 @@
 
 from closedform.model.building import model_from
 from closedform.model.model import Model, Output
+from closedform.model.parametric import ParametricModel
 from closedform.model.reading import load
 
-__all__ = ["Model", "Output", "load", "model_from"]
+__all__ = ["Model", "Output", "ParametricModel", "load", "model_from"]

@@ -64,7 +64,7 @@ class LaterKeyError(ModelError):
     def _paragraph(self) -> str:
         return (
             f"this version does not read '{self.key}' yet; state the model by 'states', "
-            "'matrix' and 'initial', with numbers only"
+            "'matrix' and 'initial'"
         )
 
 

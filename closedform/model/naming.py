@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass
 
 from closedform.errors import Place
 from closedform.model.entries import kind_of
@@ -20,7 +21,7 @@ from closedform.notation.expression import FUNCTIONS
 from closedform.notation.greek import ascii_name
 from closedform.notation.latex.names import printed_key
 
-__all__ = ["MOST_STATES", "check_lookalike", "check_name", "check_states", "check_time"]
+__all__ = ["MOST_STATES", "Names", "check_states", "check_time", "named_in"]
 
 MOST_STATES = 400
 LONGEST_NAME = 64
@@ -33,6 +34,35 @@ KEPT = {
 """Names that mean something else in a formula, and what to write."""
 LETTERS_OF_WRITE_UPS = ("lambda", "mu", "s", "p", "g", "r")
 NOTHING: Mapping[str, str] = {}
+
+
+@dataclass(frozen=True)
+class Names:
+    """The names of a model so far: the time, and what has each of the others."""
+
+    time: str
+    taken: Mapping[str, str]
+
+    def added(self, names: Iterable[str], kind: str) -> Names:
+        """Return these names and more."""
+        return Names(self.time, {**self.taken, **dict.fromkeys(names, kind)})
+
+
+def named_in(table: Iterable[str], key: str, kind: str, names: Names, source: Source) -> Names:
+    """Return the names with those of a table, which are to be usable and to differ.
+
+    `key` is the table's, `kind` what has its names, as in "an output".
+
+    Raises:  UnusableNameError, LookalikeNamesError.
+    """
+    printed = {printed_key(name): name for name in (names.time, *names.taken)}
+    added = []
+    for name in table:
+        place = f"{key}.{name}"
+        check_name(str(name), place, source, time=names.time, taken=names.taken)
+        check_lookalike(str(name), place, source, printed)
+        added.append(str(name))
+    return names.added(added, kind)
 
 
 def check_name(

@@ -52,13 +52,16 @@ class Condition:
 class Definition:
     """A name for a formula in the parameters: `formula` as written, `value` in the field.
 
-    It is either a parameter that is re-stated by others ([substitute]), or an abbreviation
-    of the user's for the results ([abbreviations]).
+    It is either a parameter that is re-stated by others ([substitute]), with its unit and
+    meaning, or an abbreviation of the user's for the results ([abbreviations]).  A formula
+    may use re-stated parameters, that of an abbreviation also those before it.
     """
 
     name: str
     formula: Expression
     value: Scalar
+    unit: str = ""
+    meaning: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -87,8 +90,10 @@ class ParametricModel:
 
     `parameters` are those in which the solution is stated, in the order of the file;
     `restated` are parameters of the file that [substitute] expresses by them, put in
-    already.  `domain` holds the assumptions, then `conditions`.  `values` is the value set
-    of the file where every parameter has a value, `value_sets` the rows of [[values]].
+    already.  `domain` holds the assumptions, then `conditions`, then that the denominators
+    of entries and definitions are not zero, as far as that does not follow.  `values` is the
+    value set of the file where every parameter has a value, `value_sets` the rows of
+    [[values]].
     """
 
     name: str

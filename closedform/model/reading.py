@@ -23,6 +23,7 @@ from closedform.model.file_errors import (
     FileUnreadableError,
 )
 from closedform.model.model import Model
+from closedform.model.parametric import ParametricModel
 from closedform.model.source import Source
 
 __all__ = ["LARGEST_FILE", "load"]
@@ -51,13 +52,14 @@ LONG_DOTTED_KEY = re.compile(
 )
 
 
-def load(path: str | os.PathLike[str]) -> Model:
+def load(path: str | os.PathLike[str]) -> Model | ParametricModel:
     """Return the model stated in a TOML file; its name is the stem of the file's name.
 
-    Decimals are read as exact rationals: 0.1 is 1/10.
+    Decimals are read as exact rationals: 0.1 is 1/10.  A file with `parameters` gives a
+    ParametricModel.
 
-    Raises:  the errors of ``closedform.model.file_errors``, ``closedform.model.errors`` and
-             ``closedform.notation.errors``; all of them are InputError.
+    Raises:  the errors of ``closedform.model`` and ``closedform.notation``; all of them are
+             InputError.
     """
     name = os.fspath(path)
     text = _decode(_read(name), name)

@@ -12,7 +12,7 @@ from closedform.errors import Place
 from closedform.notation.arithmetic import Arithmetic
 from closedform.notation.errors import DivisionByZeroError, NegativeRootError, NotANumberError
 from closedform.notation.exact import MOST_BITS
-from closedform.notation.expression import Call, Expression
+from closedform.notation.expression import Call, Expression, Negation, Sum
 from closedform.notation.linear import combination
 from closedform.notation.parametric_errors import (
     IrrationalNumberError,
@@ -23,7 +23,7 @@ from closedform.notation.parametric_errors import (
 from closedform.notation.plain import plain
 from closedform.notation.rational_formula import rational_formula
 
-__all__ = ["rational_combination", "rational_value"]
+__all__ = ["difference", "rational_combination", "rational_value"]
 
 MOST_TERMS = 100
 """Terms of a numerator or a denominator: common factors of larger ones take seconds to find."""
@@ -62,6 +62,18 @@ def rational_value(
     k - 1
     """
     return _Functions(field, meanings).value(expression, place)
+
+
+def difference(
+    one: Expression,
+    other: Expression,
+    field: ParameterField,
+    place: Place,
+    *,
+    meanings: Mapping[str, Scalar] = NOTHING,
+) -> Scalar:
+    """Return the element one - other, of two formulas.  Raises what `rational_value` raises."""
+    return rational_value(Sum((one, Negation(other))), field, place, meanings=meanings)
 
 
 def rational_combination(
