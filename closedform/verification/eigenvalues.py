@@ -15,8 +15,9 @@ from dataclasses import dataclass, field
 
 from flint import acb, acb_poly, arb, ctx
 
-from closedform.algebra.enclosure import ball_of
+from closedform.algebra.enclosure import UnsettledError, ball_of
 from closedform.algebra.field import BaseField, Polynomial
+from closedform.algebra.isolation import isolated_columns
 from closedform.algebra.roots import enclosed_roots
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
@@ -37,6 +38,7 @@ from closedform.verification.comparison import (
     check_of,
     is_narrow,
 )
+from closedform.verification.real_parts import LARGEST_FOR_SUMS, sums_of_roots
 from closedform.verification.record import Check
 
 __all__ = ["NamedValues", "certified_discs", "eigenvalue_check", "name_check"]
@@ -198,7 +200,11 @@ def _named_roots(response: Response, p: Polynomial, named: list[NamedConstant]) 
             discs = certified_discs(base, p, found)
             if discs is not None and _meet_only_themselves(found, discs):
                 centre = None if line is None else base.enclose(line)
-                order = [_in_order(discs, k, centre) for k in range(len(discs) - 1)]
+                places = range(len(discs) - 1)
+                order = [_in_order(discs, k, centre, []) for k in places]
+                if None in order:
+                    sums = _discs_of_sums(base, p)
+                    order = [_in_order(discs, k, centre, sums) for k in places]
                 if False in order:
                     return Finding("refuted", f"{names}: roots are counted out of order")
                 if None not in order:
@@ -224,7 +230,19 @@ def _line_of_symmetry(base: BaseField, p: Polynomial) -> object | None:
     return None if d % 2 or any(moved.nth(k) for k in range(1, d, 2)) else centre
 
 
-def _in_order(discs: list[acb], k: int, line: arb | None) -> bool | None:
+def _discs_of_sums(base: BaseField, p: Polynomial) -> list[acb]:
+    """Squares with one sum of two roots of p each; none if they are too many, or too close."""
+    if p.degree() > LARGEST_FOR_SUMS:
+        return []
+    q = sums_of_roots(base, p)
+    try:
+        columns = isolated_columns(base, q, None, ctx.prec)
+    except UnsettledError:
+        return []  # the order stays open, and the check says so
+    return certified_discs(base, q, [z for column in columns for z in column]) or []
+
+
+def _in_order(discs: list[acb], k: int, line: arb | None, sums: list[acb]) -> bool | None:
     """Whether root k comes before root k + 1; None if this precision does not tell."""
     left, right = discs[k], discs[k + 1]
     if left.real < right.real:
@@ -232,12 +250,15 @@ def _in_order(discs: list[acb], k: int, line: arb | None) -> bool | None:
     if right.real < left.real:
         return False
     conjugate = _only_meeting(discs, left.conjugate()) == k + 1
-    if not conjugate and not (
-        line is not None
-        and all(_only_meeting(discs, _mirrored(discs[i], line)) == i for i in (k, k + 1))
-    ):
+    on_line = line is not None and all(
+        _only_meeting(discs, _mirrored(discs[i], line)) == i for i in (k, k + 1)
+    )
+    double = _only_meeting(sums, acb(2 * left.real))
+    same_sum = double is not None and double == _only_meeting(sums, acb(2 * right.real))
+    if not (conjugate or on_line or same_sum):
         return None
-    # the real parts are equal: p is real, or its roots lie mirror-wise about the line
+    # the real parts are equal: p is real, its roots lie mirror-wise about the line, or
+    # each with its conjugate adds up to the same sum
     if left.imag < right.imag:
         return True
     return False if right.imag < left.imag else None
