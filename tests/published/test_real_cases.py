@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from typing import Any
 
 import pytest
 from flint import acb, acb_mat, arb, ctx
@@ -26,7 +27,9 @@ def complex_ball(text: str) -> acb:
     return ball(re.sub(r"(\d)e([+-])", r"\1E\2", text))
 
 
-def stated(case: Case) -> object:
+def stated(case: Case) -> Any:
+    if case["parameters"]:
+        return with_parameters(case["states"], case["matrix"], case["initial"], case["parameters"])
     return closedform.system(case["matrix"], initial=case["initial"], states=case["states"])
 
 
@@ -57,12 +60,8 @@ def test_a_system_of_numbers_is_solved_and_proved(identifier: str) -> None:
 
 @pytest.mark.parametrize("identifier", REFUSED)
 def test_complex_entries_are_refused_by_name_and_place(identifier: str) -> None:
-    case = REAL_CASES[identifier]
     with pytest.raises(UndeclaredNameError, match=r"matrix\[\d\]\[\d\].*the name 'I'"):
-        if case["parameters"]:
-            with_parameters(case["states"], case["matrix"], case["initial"], case["parameters"])
-        else:
-            stated(case)
+        stated(REAL_CASES[identifier])
 
 
 @pytest.mark.parametrize("identifier", REAL_CASES)
