@@ -26,7 +26,7 @@ T = TypeVar("T")
 
 def shortest_formula(formulas: Iterable[Expression], places: Mapping[str, int]) -> Expression:
     """Return the formula that is shortest; `places` says which name comes before which."""
-    return shortest_of(formulas, lambda formula: formula, places)
+    return shortest_of(map(opened, formulas), lambda formula: formula, places)
 
 
 def shortest_of(
@@ -38,7 +38,7 @@ def shortest_of(
     operations, then with the fewest minus signs in these, then with the fewest differences
     whose names come in the other order; then the earlier.
     """
-    shown = [(item, opened(formula_of(item))) for item in items]
+    shown = [(item, formula_of(item)) for item in items]
     counts = [operations(formula) for _, formula in shown]
     least = min(counts)
     best = [pair for pair, count in zip(shown, counts, strict=True) if count == least]

@@ -35,6 +35,7 @@ from closedform.notation.terms import sum_of
 __all__ = [
     "Laurent",
     "Weight",
+    "as_weight",
     "laurent_of",
     "monomial_weight",
     "ordered",
@@ -156,10 +157,11 @@ def shortest_sum(field: ParameterField, terms: Laurent) -> Weight:
 
 
 def _sum_of_groups(field: ParameterField, groups: Sequence[Laurent]) -> Weight:
-    return _as_weight(sum_of([written(shortest_sum(field, group)) for group in groups]))
+    return as_weight(sum_of([written(shortest_sum(field, group)) for group in groups]))
 
 
-def _as_weight(total: Expression) -> Weight:
+def as_weight(total: Expression) -> Weight:
+    """Return a sum as a weight, its sign outside where all terms are negative."""
     if isinstance(total, Negation):
         return Weight(Fraction(-1), (total.operand,))
     return Weight(Fraction(1), (total,))
@@ -263,7 +265,7 @@ def _squares(field: ParameterField, terms: Laurent) -> Iterator[Weight]:
             square = written(power_of_weight(shortest_sum(field, ordered(inner)), 2))
             parts = [square if sign > 0 else Negation(square)]
             parts += [written(shortest_sum(field, rest))] if rest else []
-            yield _as_weight(sum_of(parts))
+            yield as_weight(sum_of(parts))
 
 
 def _without_square(

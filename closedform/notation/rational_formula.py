@@ -8,6 +8,7 @@ difference where there is one: k2 - k1, and not -(k1 - k2).
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from dataclasses import replace
 from fractions import Fraction
 from functools import lru_cache
 from itertools import chain, combinations
@@ -21,6 +22,7 @@ from closedform.notation.expression import ZERO, Expression, operations
 from closedform.notation.laurent_sum import (
     Laurent,
     Weight,
+    as_weight,
     laurent_of,
     monomial_weight,
     ordered,
@@ -30,12 +32,15 @@ from closedform.notation.laurent_sum import (
     shortest_sum,
     written,
 )
-from closedform.notation.terms import opened
+from closedform.notation.terms import opened, sum_of
 
 __all__ = ["rational_formula", "taken_apart", "weighted_parts", "weighted_rational"]
 
 EXPANDED = 60
 """Products that may have more terms than this are not multiplied out."""
+
+DIVIDED = 12
+"""Numerators with more terms than this are not divided by factors of the denominator."""
 
 
 def rational_formula(field: ParameterField, element: Scalar) -> Expression:
@@ -109,33 +114,96 @@ def _weight(field: ParameterField, value: Factored) -> Weight:
             exponents = [e + m * exponent for e, m in zip(exponents, monomial, strict=True)]
     above = tuple((f, e) for f, e in long if e > 0)
     below = tuple((f, -e) for f, e in long if e < 0)
-    single = monomial_weight(field, exponents, value.content)
-    forms = [_factored(field, single, above, below)]
-    for chosen in _expansions(above):
-        apart = any(e < 0 for e in exponents) or value.content.denominator > 1
-        if len(chosen) == 1 and chosen[0][1] == 1 and not apart:
-            continue
-        rest = tuple(pair for pair in above if pair not in chosen)
-        inner = shortest_sum(field, _multiplied(chosen, tuple(exponents), single))
-        forms.append(_factored(field, inner, rest, below))
-    return shortest(field, forms)
+    forms: list[Weight] = []
+    for single, number, lower in _denominators(exponents, value.content, below):
+        forms.append(_factored(field, monomial_weight(field, single, number), above, lower))
+        for chosen, whole in _expansions(above):
+            if any(single) or abs(number) != 1 or len(chosen) > 1 or chosen[0][1] > 1:
+                rest = tuple(pair for pair in above if pair not in chosen)
+                inner = shortest_sum(field, _times(whole, single, number))
+                forms.append(_factored(field, inner, rest, lower))
+    return shortest(field, [*forms, *_divisions(field, value, above, below)])
 
 
-def _expansions(powers: Powers) -> Iterator[Powers]:
-    """Which factors to multiply out: any, if there are few; else all of them."""
+def _denominators(
+    exponents: Sequence[int], number: Fraction, below: Powers
+) -> Iterator[tuple[Sequence[int], Fraction, Powers]]:
+    """Yield the denominator in factors, and multiplied out, with what is left for the front."""
+    yield exponents, number, below
+    lows = [max(-e, 0) for e in exponents]
+    whole = _expanded(below)
+    if whole is None or not (any(lows) or number.denominator > 1 or len(below) > 1):
+        return
+    lower = _polynomial(whole.ring, _times(whole, lows, Fraction(number.denominator)))
+    yield [max(e, 0) for e in exponents], Fraction(number.numerator), ((lower, 1),)
+
+
+def _expanded(powers: Powers) -> ParameterPolynomial | None:
+    """Return a product multiplied out, if it is of moderate size; None for the empty product."""
+    if not powers or prod(len(laurent_of(f)) ** e for f, e in powers) > EXPANDED:
+        return None
+    return prod((f**e for f, e in powers[1:]), start=powers[0][0] ** powers[0][1])
+
+
+def _divisions(
+    field: ParameterField, value: Factored, above: Powers, below: Powers
+) -> Iterator[Weight]:
+    """Numerator = q·f + r for a factor f below: q + r/f, what else is there inside or outside."""
+    upper = _expanded(above)
+    if upper is None or len(upper) > DIVIDED:
+        return
+    others = tuple(pair for pair in value.factors if pair not in above)
+    for factor, _ in below:
+        whole, remainder = _divided(upper, factor)
+        if whole and remainder:
+            front = field.product_of(replace(value, factors=others))
+            once = 1 / field.of_polynomial(factor)
+            parts = [field.of_polynomial(part) for part in (whole, remainder)]
+            yield _sum_of(field, [part * front for part in parts])
+            outside = _weight(field, taken_apart(front / once))
+            yield product_of_weights([outside, _sum_of(field, [part * once for part in parts])])
+
+
+def _sum_of(field: ParameterField, parts: Sequence[Scalar]) -> Weight:
+    return as_weight(sum_of([weighted_rational(field, part, (), ()) for part in parts]))
+
+
+def _divided(
+    upper: ParameterPolynomial, factor: ParameterPolynomial
+) -> tuple[ParameterPolynomial, ParameterPolynomial]:
+    """Return a multiple of the factor and the rest of the terms, such that they add up.
+
+    Terms are taken together that are alike in the parameters that are not in the factor.
+    """
+    ring = upper.ring
+    inner = [any(column) for column in zip(*factor.itermonoms(), strict=True)]
+    alike: dict[tuple[int, ...], dict[tuple[int, ...], Any]] = {}
+    for monomial, coefficient in upper.iterterms():
+        key = tuple(0 if i else e for i, e in zip(inner, monomial, strict=True))
+        alike.setdefault(key, {})[monomial] = coefficient
+    multiple, rest = ring.zero, ring.zero
+    for terms in alike.values():
+        part = ring.from_dict(terms)
+        if len(terms) < len(factor) or part.rem(factor):
+            rest += part
+        else:
+            multiple += part
+    return multiple, rest
+
+
+def _expansions(powers: Powers) -> Iterator[tuple[Powers, ParameterPolynomial]]:
+    """Yield factors to multiply out, and their product: any, if there are few; else all."""
     sizes = range(1, len(powers) + 1) if len(powers) <= 3 else [len(powers)]
     for chosen in chain.from_iterable(combinations(powers, size) for size in sizes):
-        if prod(len(laurent_of(f)) ** e for f, e in chosen) <= EXPANDED:
-            yield chosen
+        if (whole := _expanded(chosen)) is not None:
+            yield chosen, whole
 
 
-def _multiplied(powers: Powers, exponents: tuple[int, ...], single: Weight) -> Laurent:
-    total = prod((f**e for f, e in powers[1:]), start=powers[0][0] ** powers[0][1])
-    terms = (
-        (tuple(e + d for e, d in zip(m, exponents, strict=True)), c * single.number)
-        for m, c in laurent_of(total)
+def _times(polynomial: ParameterPolynomial, exponents: Sequence[int], number: Fraction) -> Laurent:
+    return ordered(
+        (tuple(e + d for e, d in zip(m, exponents, strict=True)), c * number)
+        for m, c in laurent_of(polynomial)
     )
-    return ordered(terms)
 
 
 def _factored(field: ParameterField, front: Weight, above: Powers, below: Powers) -> Weight:
