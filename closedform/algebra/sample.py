@@ -13,39 +13,55 @@ from closedform.algebra.squares import coefficients_in
 
 __all__ = ["holds_at", "sample_points", "value_at"]
 
-TRIES = 400
+TRIES = 200
 """Tries for each point asked for, and at least ten times as many in all."""
-SCALES = ((6, 1), (9, 2), (20, 4), (40, 10), (100, 10))
-"""The largest numerator and denominator of each scale; they are taken in turn."""
+SCALES = ((6, 1), (9, 2), (20, 4), (40, 10), (100, 1), (6, 20))
+"""The largest numerator and denominator of each scale."""
+
+Terms = tuple[tuple[Fraction, tuple[tuple[str, int], ...]], ...]
+"""A polynomial as its coefficients and the powers of parameters beside them."""
 
 
 def value_at(element: Scalar, point: Mapping[str, Fraction]) -> Fraction | None:
-    """Return the value of an element at a point, or None where it is not defined."""
-    names = [str(s) for s in element.field.symbols]
-    values = [point.get(n) for n in names]
-    below = _value(element.denom, values)
-    return _value(element.numer, values) / below if below else None
+    """Return the value of an element at a point, or None where it is not defined.
 
-
-def _value(polynomial: ParameterPolynomial, values: Sequence[Fraction | None]) -> Fraction:
-    total = Fraction(0)
-    for monomial, coefficient in polynomial.iterterms():
-        term = rational(coefficient)
-        for value, exponent in zip(values, monomial, strict=True):
-            if exponent:
-                if value is None:
-                    raise KeyError(str(polynomial))
-                term *= value**exponent
-        total += term
-    return total
+    Raises KeyError for a parameter of the element that has no value.
+    """
+    return _quotient(_terms(element.numer), _terms(element.denom), point)
 
 
 def holds_at(comparison: Comparison, point: Mapping[str, Fraction]) -> bool:
     """Return whether a comparison is defined and holds at a point."""
-    value = value_at(comparison.element, point)
+    return _holds(value_at(comparison.element, point), comparison)
+
+
+def _holds(value: Fraction | None, comparison: Comparison) -> bool:
     if value is None:
         return False
     return (value > 0) - (value < 0) in relation_values(comparison.relation)
+
+
+def _terms(polynomial: ParameterPolynomial) -> Terms:
+    names = [str(s) for s in polynomial.ring.symbols]
+    return tuple(
+        (rational(c), tuple((n, e) for n, e in zip(names, m, strict=True) if e))
+        for m, c in polynomial.iterterms()
+    )
+
+
+def _quotient(above: Terms, below: Terms, point: Mapping[str, Fraction]) -> Fraction | None:
+    divisor = _sum(below, point)
+    return _sum(above, point) / divisor if divisor else None
+
+
+def _sum(terms: Terms, point: Mapping[str, Fraction]) -> Fraction:
+    total = Fraction(0)
+    for coefficient, powers in terms:
+        term = coefficient
+        for name, exponent in powers:
+            term *= point[name] ** exponent
+        total += term
+    return total
 
 
 def sample_points(
@@ -61,21 +77,33 @@ def sample_points(
         return []
     signs = _drawn_signs(field, conditions)
     free = [n for n in field.parameters if n not in solved]
+    put = {n: (_terms(e.numer), _terms(e.denom)) for n, e in reversed(solved.items())}
+    asked = [(c, _terms(c.element.numer), _terms(c.element.denom)) for c in conditions]
     draw = random.Random(seed)  # noqa: S311  (points to look at, no secret)
     found: list[dict[str, Fraction]] = []
     for attempt in range(TRIES * max(count, 10)):
         if len(found) >= count:
             break
-        point = _drawn(free, signs, SCALES[attempt % len(SCALES)], draw)
-        for name, element in reversed(solved.items()):
-            value = value_at(element, point)
-            if value is None:
-                break
-            point[name] = value
-        else:
-            if point not in found and all(holds_at(c, point) for c in conditions):
-                found.append({n: point[n] for n in field.parameters})
+        one = SCALES[attempt % len(SCALES)]
+        scales = {n: draw.choice(SCALES) if attempt % 2 else one for n in free}
+        point = _drawn(scales, signs, draw)
+        if not _completed(point, put):
+            continue
+        if all(_holds(_quotient(above, below, point), c) for c, above, below in asked):
+            ordered = {n: point[n] for n in field.parameters}
+            if ordered not in found:
+                found.append(ordered)
     return found
+
+
+def _completed(point: dict[str, Fraction], put: Mapping[str, tuple[Terms, Terms]]) -> bool:
+    """Give the solved parameters their values; False where one is not defined."""
+    for name, (above, below) in put.items():
+        value = _quotient(above, below, point)
+        if value is None:
+            return False
+        point[name] = value
+    return True
 
 
 def _solved(field: ParameterField, conditions: Sequence[Comparison]) -> dict[str, Scalar] | None:
@@ -120,14 +148,13 @@ def _drawn_signs(field: ParameterField, conditions: Sequence[Comparison]) -> dic
 
 
 def _drawn(
-    names: Sequence[str], signs: Mapping[str, int], scale: tuple[int, int], draw: random.Random
+    scales: Mapping[str, tuple[int, int]], signs: Mapping[str, int], draw: random.Random
 ) -> dict[str, Fraction]:
     """Different values for the names, none of them 0."""
     point: dict[str, Fraction] = {}
-    top, bottom = scale
-    for name in names:
+    for name, (top, bottom) in scales.items():
         while True:
-            value = Fraction(draw.randint(1, top + len(names)), draw.randint(1, bottom))
+            value = Fraction(draw.randint(1, top + len(scales)), draw.randint(1, bottom))
             value *= signs.get(name) or draw.choice((1, -1))
             if value not in point.values():
                 break

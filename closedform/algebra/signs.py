@@ -35,7 +35,7 @@ from closedform.algebra.sign_argument import (
     relation_values,
     total,
 )
-from closedform.algebra.squares import balanced, coefficients_in, completed
+from closedform.algebra.squares import balanced, coefficients_in, completed, joined
 
 __all__ = ["Facts"]
 
@@ -186,12 +186,18 @@ class Facts:
     def _by_squares(
         self, polynomial: ParameterPolynomial, _depth: int = 0
     ) -> Iterator[tuple[Values, Reason]]:
-        for sign in (1, -1):
-            taken = balanced(self.field, polynomial, self.conditions.term, sign)
-            if taken is not None:
+        for search in (balanced, joined):
+            for sign in (1, -1):
+                taken = search(self.field, polynomial, self.conditions.term, sign)
+                if taken is None:
+                    continue
                 squares, rest = taken
-                weak = frozenset({0, sign})
-                yield _with_rest(weak, self._short(rest), partial(BySquares, squares))
+                left = self.conditions.terms(rest)
+                values = total([frozenset({0, sign}), left])
+                if values != ANY:
+                    shown = SignArgument(self.field.of_polynomial(rest), named(left), ByTerms())
+                    yield values, BySquares(squares, shown if rest else None)
+                    return
 
     def _by_rest(
         self, polynomial: ParameterPolynomial, _depth: int
