@@ -1,0 +1,242 @@
+"""Every case of a system with parameters: the generic solution, and where it does not hold.
+
+A branch is a part of the domain, cut out by equations, with the exponential of its matrix.
+The coefficients of an exponential are rational functions: the identities that prove it
+hold wherever their denominators do not vanish and the roots of each factor stay apart.
+The irreducible polynomials among these are the exceptional set of a branch.  Each is
+excluded by the domain, with a reason, or leads to a branch of its own, solved again under
+its equation, and so on.  At every branch the domain is split into "no exceptional
+polynomial vanishes" and "this one does", so the branches cover the domain, but for what is
+listed as not covered.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+from typing import Literal
+
+from closedform.algebra.domain import Comparison, ParameterDomain, SignArgument
+from closedform.algebra.exceptional import exceptional_elements
+from closedform.algebra.exponential import ExponentialMatrix, exponential_by_resolvent
+from closedform.algebra.factor_structure import FactorStructure, structure_of_factor
+from closedform.algebra.field import FieldMatrix, Scalar
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parametric_spectrum import parametric_spectrum, spectrum_under_relation
+from closedform.algebra.spectrum import Spectrum
+
+__all__ = ["MOST_BRANCHES", "Branch", "Equation", "Exceptional", "case_tree", "put_in"]
+
+MOST_BRANCHES = 16
+"""Branches that are solved, the generic one among them: more would be no use in print."""
+
+
+@dataclass(frozen=True)
+class Equation:
+    """`polynomial` = 0, solved for `parameter` = `value`; kept as it is where these are None."""
+
+    polynomial: Scalar
+    parameter: str | None = None
+    value: Scalar | None = None
+
+
+@dataclass(frozen=True)
+class Exceptional:
+    """Polynomials that must not vanish (together) for a branch to hold, and what came of it.
+
+    `fate` is "excluded" by the domain, with `argument` the sign that says so or
+    `contradicted` the conditions that cannot hold then; a "branch" with this number; or
+    "not covered", with `reason`.
+    """
+
+    polynomials: tuple[Scalar, ...]
+    fate: Literal["excluded", "branch", "not covered"]
+    argument: SignArgument | None = None
+    contradicted: tuple[Comparison, ...] = ()
+    branch: int | None = None
+    reason: str = ""
+
+
+@dataclass(frozen=True)
+class Branch:
+    """One part of the domain with its exact exponential; number 0 is the generic one.
+
+    Shapes:  `matrix` and `exponential` are n x n.  `equations` are put in already;
+    `relation` is the one that was kept, if any: equality then means equality where it
+    vanishes.  `structures` follow the factors of the spectrum.
+    """
+
+    number: int
+    equations: tuple[Equation, ...]
+    domain: ParameterDomain
+    matrix: FieldMatrix
+    spectrum: Spectrum
+    exponential: ExponentialMatrix
+    structures: tuple[FactorStructure | None, ...]
+    exceptional: tuple[Exceptional, ...] = ()
+
+    @property
+    def relation(self) -> Scalar | None:
+        """The polynomial that vanishes on this branch without being solved for a parameter."""
+        return next((e.polynomial for e in self.equations if e.parameter is None), None)
+
+    @property
+    def values(self) -> dict[str, Scalar]:
+        """What the equations put in the place of parameters."""
+        return {e.parameter: e.value for e in self.equations if e.parameter is not None}
+
+
+@dataclass(frozen=True)
+class _Start:
+    """A branch that is not solved yet."""
+
+    equations: tuple[Equation, ...]
+    domain: ParameterDomain
+    parent: Spectrum | None = None
+
+
+def case_tree(
+    field: ParameterField,
+    matrix: FieldMatrix,
+    domain: ParameterDomain,
+    *,
+    most: int = MOST_BRANCHES,
+) -> tuple[Branch, ...]:
+    """Return the branches of x' = A x, the generic one first, breadth first.
+
+    `matrix` is over the field, its denominators do not vanish on the domain.
+    Exact:   no number is rounded; every exclusion has an argument.
+    """
+    starts = [_Start((), domain)]
+    known: dict[object, int] = {_key(starts[0]): 0}
+    branches: list[Branch] = []
+    for number, start in enumerate(starts):  # it grows while it is walked through
+        solved = _solved(field, matrix, start, number)
+        found = []
+        for polynomials in exceptional_elements(field, solved.exponential, solved.structures):
+            fate = _fate(field, solved, polynomials)
+            if isinstance(fate, _Start):
+                key = _key(fate)
+                if key not in known and len(starts) < most:
+                    known[key] = len(starts)
+                    starts.append(fate)
+                fate = (
+                    Exceptional(polynomials, "branch", branch=known[key])
+                    if key in known
+                    else Exceptional(polynomials, "not covered", reason="budget")
+                )
+            found.append(fate)
+        branches.append(_with_exceptional(solved, tuple(found)))
+    return tuple(branches)
+
+
+def put_in(field: ParameterField, matrix: FieldMatrix, values: dict[str, Scalar]) -> FieldMatrix:
+    """Return a matrix with elements in the place of parameters."""
+    if not values:
+        return matrix
+    rows = matrix.to_list()
+    return field.matrix([[field.substituted(e, values) for e in row] for row in rows])
+
+
+def _with_exceptional(branch: Branch, found: tuple[Exceptional, ...]) -> Branch:
+    return Branch(
+        branch.number,
+        branch.equations,
+        branch.domain,
+        branch.matrix,
+        branch.spectrum,
+        branch.exponential,
+        branch.structures,
+        found,
+    )
+
+
+def _solved(field: ParameterField, matrix: FieldMatrix, start: _Start, number: int) -> Branch:
+    values = {e.parameter: e.value for e in start.equations if e.parameter is not None}
+    a = put_in(field, matrix, values)
+    relation = next((e.polynomial for e in start.equations if e.parameter is None), None)
+    spectrum = parametric_spectrum(field, a)
+    if relation is not None:
+        spectrum = spectrum_under_relation(field, spectrum, relation)
+    exponential = exponential_by_resolvent(field, a, spectrum)
+    structures = tuple(
+        structure_of_factor(field, a, f.p, start.domain) if f.degree > 2 else None
+        for f in spectrum.factors
+    )
+    return Branch(number, start.equations, start.domain, a, spectrum, exponential, structures)
+
+
+def _fate(
+    field: ParameterField, branch: Branch, polynomials: tuple[Scalar, ...]
+) -> Exceptional | _Start:
+    """Say what becomes of the points of a branch at which the polynomials vanish together."""
+    for polynomial in polynomials:
+        argument = branch.domain.sign_of(polynomial)
+        if argument.never_zero:
+            return Exceptional(polynomials, "excluded", argument)
+    domain, equations = branch.domain, branch.equations
+    for polynomial in polynomials:
+        values = {e.parameter: e.value for e in equations if e.parameter is not None}
+        left = field.substituted(polynomial, values)
+        if not left:
+            continue
+        factors = [field.of_polynomial(f) for f, e in field.factored(left).factors if e > 0]
+        open_ones = [f for f in factors if not domain.sign_of(f).never_zero]
+        if not open_ones:
+            return Exceptional(polynomials, "excluded", domain.sign_of(left))
+        if len(open_ones) > 1:
+            return Exceptional(polynomials, "not covered", reason="several equations")
+        equation = _equation(field, open_ones[0], domain)
+        if equation.parameter is None or equation.value is None:
+            if any(e.parameter is None for e in equations) or len(polynomials) > 1:
+                return Exceptional(polynomials, "not covered", reason="two relations")
+            equations = (*equations, equation)
+            domain = domain.narrowed(Comparison(equation.polynomial, "="))
+        else:
+            put = {equation.parameter: equation.value}
+            equations = (*(_put_in_equation(field, e, put) for e in equations), equation)
+            domain = domain.substituted(equation.parameter, equation.value)
+        contradicted = domain.contradiction()
+        if contradicted is not None:
+            return Exceptional(polynomials, "excluded", contradicted=contradicted)
+    return _Start(equations, domain)
+
+
+def _put_in_equation(field: ParameterField, equation: Equation, put: dict[str, Scalar]) -> Equation:
+    value = None if equation.value is None else field.substituted(equation.value, put)
+    polynomial = equation.polynomial
+    if equation.parameter is None:
+        polynomial = field.substituted(polynomial, put)
+    return Equation(polynomial, equation.parameter, value)
+
+
+def _equation(field: ParameterField, polynomial: Scalar, domain: ParameterDomain) -> Equation:
+    """Solve polynomial = 0 for a parameter in which it is linear, the last one if possible.
+
+    The coefficient of the parameter must not vanish on the domain; a number is preferred.
+    """
+    choices = []
+    for name in reversed(field.parameters):
+        slope = field.derivative(polynomial, name)
+        if not slope or name in field.names_in(slope):
+            continue
+        rest = field.substituted(polynomial, {name: field.domain.zero})
+        plain = field.constant(slope) is not None
+        if plain or domain.sign_of(slope).never_zero:
+            choices.append((not plain, Equation(polynomial, name, -rest / slope)))
+    return min(choices, key=lambda c: c[0])[1] if choices else Equation(polynomial)
+
+
+def _key(start: _Start) -> object:
+    """The branch's equations: solved ones by parameter, kept ones as they are."""
+    return frozenset(
+        (e.parameter, e.value if e.parameter is not None else e.polynomial) for e in start.equations
+    )
+
+
+def uncovered(branches: tuple[Branch, ...]) -> Iterator[tuple[Branch, Exceptional]]:
+    """Yield what no branch covers."""
+    for branch in branches:
+        for exceptional in branch.exceptional:
+            if exceptional.fate == "not covered":
+                yield branch, exceptional

@@ -1,0 +1,94 @@
+"""What follows from a model with parameters: every case of its closed form."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from itertools import product
+
+from closedform.algebra.branches import Branch, case_tree, put_in
+from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.field import FieldMatrix
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.regimes import regimes_of
+from closedform.model.parametric import ParametricModel
+from closedform.notation.plain import plain
+from closedform.response.parametric.case import Case, written_case
+
+__all__ = ["ParametricResponse", "respond_in_cases"]
+
+
+@dataclass(frozen=True, repr=False)
+class ParametricResponse:
+    """The exact response of a model with parameters, case by case.
+
+    Shapes:  `matrix` is n x n, `initial` n x 1, over the model's field.  `domain` is the
+    model's, without the points at which A is not defined.  `cases` follow `branches`, with
+    one case for each way in which the regimes of a branch's factors combine.
+    """
+
+    model: ParametricModel
+    domain: ParameterDomain
+    matrix: FieldMatrix
+    initial: FieldMatrix
+    branches: tuple[Branch, ...]
+    cases: tuple[Case, ...]
+
+    def __repr__(self) -> str:
+        states, cases = len(self.model.states), len(self.cases)
+        return f"<Response of {self.model.title!r}, {states} states, {cases} cases>"
+
+    def __str__(self) -> str:
+        """Return the solution, case by case, a line for each state."""
+        t = self.model.time
+        lines = []
+        for case in self.cases:
+            lines.append(f"if {case.condition}:" if case.conditions else "always:")
+            for state, formula in zip(self.model.states, case.solution, strict=True):
+                lines.append(f"  {state}({t}) = {plain(formula)}")
+            lines += [
+                f"  {quantity.name} = {plain(quantity.formula)}"
+                for quantity in case.quantities
+                if quantity.formula is not None
+            ]
+        return "\n".join(lines)
+
+
+def respond_in_cases(model: ParametricModel) -> ParametricResponse:
+    """Return the exact response of a model with parameters, in every case.
+
+    Exact:   no floating-point number takes part.  Nothing is proved yet: see `verify`.
+    Raises:  RootsUnknownError where it is not known how the roots of a factor lie.
+    """
+    field = model.field
+    matrix = field.matrix([list(row) for row in model.matrix])
+    initial = field.matrix([[entry] for entry in model.initial])
+    domain = _where_defined(model.domain, field, matrix, initial)
+    branches = case_tree(field, matrix, domain)
+    cases: list[Case] = []
+    for branch in branches:
+        values = branch.values
+        state = branch.exponential.times(put_in(field, initial, values))
+        output = None
+        if model.outputs:
+            weights = field.matrix([list(o.weights) for o in model.outputs])
+            output = state.after(put_in(field, weights, values))
+        ways = [
+            regimes_of(field, factor, structure, branch.domain)
+            for factor, structure in zip(branch.spectrum.factors, branch.structures, strict=True)
+        ]
+        for regimes in product(*ways):
+            cases.append(written_case(model, branch, regimes, state, output, len(cases)))
+    return ParametricResponse(model, domain, matrix, initial, branches, tuple(cases))
+
+
+def _where_defined(
+    domain: ParameterDomain, field: ParameterField, *matrices: FieldMatrix
+) -> ParameterDomain:
+    """Leave out where a denominator of the model itself vanishes."""
+    for matrix in matrices:
+        for row in matrix.to_list():
+            for element in row:
+                if element and not element.denom.is_ground:
+                    below = field.of_polynomial(element.denom)
+                    domain = domain.narrowed(Comparison(below, "!="))
+    return domain
