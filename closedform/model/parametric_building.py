@@ -20,7 +20,7 @@ from closedform.model.parametric import (
 from closedform.model.source import Source
 from closedform.model.statement import Heading, initial_of, matrix_of, outputs_of, table_of
 from closedform.model.substitution import substituted
-from closedform.model.values import row_of_values, rows_of_values
+from closedform.model.values import ValueReading
 from closedform.notation.expression import names_in
 
 __all__ = ["parametric_model"]
@@ -61,7 +61,7 @@ def parametric_model(
     values += [definition.value for definition in (*restated, *abbreviations)]
     domain, added = domain_of(field, requirements, values, source)
     parameters = tuple(p for p in declared if p.name in field.parameters)
-    checked = (*requirements, *added)
+    reading = ValueReading(parameters, restated, (*requirements, *added), field, source)
     return ParametricModel(
         name=heading.name,
         title=heading.title,
@@ -78,10 +78,8 @@ def parametric_model(
         conditions=conditions,
         restated=restated,
         abbreviations=abbreviations,
-        values=row_of_values(parameters, checked, field, source),
-        value_sets=rows_of_values(
-            mapping.get("values", ()), parameters, restated, checked, field, source
-        ),
+        values=reading.own(),
+        value_sets=reading.rows(mapping.get("values", ())),
         times=heading.times,
         time=heading.time,
         summary=heading.summary,

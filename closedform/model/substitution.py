@@ -45,11 +45,6 @@ def substituted(
     formulas = {name: _formula(name, formula, known, source) for name, formula in table.items()}
     order = _order(formulas, source)
     remaining = tuple(parameter.name for parameter in declared if parameter.name not in table)
-    for parameter in declared:
-        if parameter.name in table and parameter.value is not None:
-            place = source.at(f"parameters.{parameter.name}.value")
-            others = _final(parameter.name, formulas, remaining)
-            raise RestatedValueError(place, parameter.name, others)
     if not remaining:
         raise NoParametersError(source.at_name("substitute"), restated=True)
     field = ParameterField(parameters=remaining)
@@ -57,6 +52,12 @@ def substituted(
     for name in order:
         reading = Formulas(field, meanings, source)
         meanings[name] = reading.definition(name, table[name], f"substitute.{name}").value
+    for parameter in declared:
+        if parameter.name in table and parameter.value is not None:
+            used = field.names_in(meanings[parameter.name])
+            others = tuple(name for name in remaining if name in used)
+            place = source.at(f"parameters.{parameter.name}.value")
+            raise RestatedValueError(place, parameter.name, others)
     restated = tuple(
         _described(Definition(name, formulas[name], meanings[name]), declared) for name in table
     )
@@ -83,19 +84,6 @@ def _order(formulas: Mapping[str, Expression], source: Source) -> tuple[str, ...
     except CycleError as error:
         circle = tuple(reversed(error.args[1]))
         raise SubstitutionCycleError(source.at(f"substitute.{circle[0]}"), circle) from None
-
-
-def _final(
-    name: str, formulas: Mapping[str, Expression], remaining: Sequence[str]
-) -> tuple[str, ...]:
-    """Return the parameters that remain in the formula of a re-stated one."""
-    found: set[str] = set()
-    pending = [name]
-    while pending:
-        used = names_in(formulas[pending.pop()])
-        found |= used
-        pending += sorted(used & frozenset(formulas))
-    return tuple(other for other in remaining if other in found)
 
 
 def _described(definition: Definition, declared: Sequence[Parameter]) -> Definition:
