@@ -111,8 +111,10 @@ def case_conditions(
         for e in branch.exceptional
         if e.fate != "excluded"
     ]
-    for comparison in (*apart, *(c for regime in regimes for c in regime.conditions)):
-        if inside.implies(comparison):
+    of_regimes = [c for regime in regimes for c in regime.conditions]
+    whole = inside.narrowed(*of_regimes)
+    for comparison in (*apart, *of_regimes):
+        if (whole if comparison in apart else inside).implies(comparison):
             continue
         written.append(written_comparison(inside, comparison))
         inside = inside.narrowed(comparison)

@@ -1,0 +1,1 @@
+"""What is proved about a response with parameters, case by case."""
