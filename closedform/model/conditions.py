@@ -141,7 +141,7 @@ def domain_of(
         text = f"{plain(rational_formula(field, factor))} != 0"
         added.append(Requirement(text, "matrix", comparison))
         domain = ParameterDomain(field, (*domain.conditions, comparison))
-    _refuse_contradiction(domain, (*requirements, *added), source)
+    _refuse_contradiction(field, (*requirements, *added), source)
     return domain, tuple(added)
 
 
@@ -157,15 +157,35 @@ def _factors_below(field: ParameterField, elements: Iterable[Scalar]) -> tuple[S
 
 
 def _refuse_contradiction(
-    domain: ParameterDomain, requirements: Sequence[Requirement], source: Source
+    field: ParameterField, requirements: Sequence[Requirement], source: Source
 ) -> None:
-    if domain.sample(1, seed=0):  # a point where all hold, found sooner than that no reason is
-        return
-    contrary = domain.contradiction()
-    if contrary is None:
-        return
-    involved = [r for r in requirements if any(r.comparison is c for c in contrary)]
-    place = source.at(involved[-1].key)
-    if place.line is None:
-        place = source.at_name(involved[-1].key)
-    raise ContradictionError(place, tuple(dict.fromkeys(r.text for r in involved)))
+    for group in _connected(field, requirements):
+        domain = ParameterDomain(field, tuple(r.comparison for r in group))
+        if domain.sample(1, seed=0):  # a point where all hold is found sooner than no reason
+            continue
+        contrary = domain.contradiction()
+        if contrary is None:
+            continue
+        involved = [r for r in group if any(r.comparison is c for c in contrary)]
+        place = source.at(involved[-1].key)
+        if place.line is None:
+            place = source.at_name(involved[-1].key)
+        raise ContradictionError(place, tuple(dict.fromkeys(r.text for r in involved)))
+
+
+def _connected(
+    field: ParameterField, requirements: Sequence[Requirement]
+) -> list[list[Requirement]]:
+    """Return the requirements in groups that have no parameter in common.
+
+    Requirements that contradict each other stand in one group, and the work grows with its
+    size only.
+    """
+    groups: list[tuple[frozenset[str], list[int]]] = []
+    for k, requirement in enumerate(requirements):
+        names, members = field.names_in(requirement.comparison.element), [k]
+        for group in [group for group in groups if group[0] & names]:
+            groups.remove(group)
+            names, members = names | group[0], [*group[1], *members]
+        groups.append((names, sorted(members)))
+    return [[requirements[k] for k in members] for members in sorted(m for _, m in groups)]

@@ -12,10 +12,13 @@ from hypothesis import strategies as st
 from closedform.algebra.domain import Comparison
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.surds import SurdSum
+from closedform.errors import Place
 from closedform.model import Model, ParametricModel, load, model_from
 from closedform.model.building import system
 from closedform.model.parametric import Parameter, ParametricOutput, ValueSet
 from closedform.notation.plain import plain
+from closedform.notation.rational import rational_value
+from closedform.notation.reader import read_formula
 from tests.model.oscillator import OSCILLATOR, spoiled
 from tests.model.statements import written
 
@@ -215,3 +218,34 @@ def test_denominators_are_kept_from_zero_where_that_does_not_follow() -> None:
 def test_greek_letters_in_formulas_are_their_names() -> None:
     model = stated([["-ω_n"]], parameters={"omega_n": "positive"})
     assert model.matrix[0][0] == -model.field.symbol("omega_n")
+
+
+SIDES = ["a", "b", "c", "a + b", "a*b", "b*c", "a - c", "c^2", "1", "2", "a*b*c"]
+COMPARED = st.lists(st.tuples(*[st.sampled_from(SIDES)] * 2), min_size=1, max_size=4)
+HOLDING = {-1: ("<", "<=", "!="), 0: ("=", "<=", ">="), 1: (">", ">=", "!=")}
+
+
+@given(COMPARED, st.tuples(*[st.fractions(-3, 3, max_denominator=3)] * 3), st.integers(0, 2))
+def test_conditions_that_hold_at_a_point_are_no_contradiction(
+    pairs: list[tuple[str, str]], point: tuple[Fraction, ...], choice: int
+) -> None:
+    """Whatever holds at some point is read, and the point is accepted as values."""
+    values = {name: NUMBER(value) for name, value in zip("abc", point, strict=True)}
+    field = ParameterField(parameters=("a", "b", "c"))
+    conditions = []
+    for pair in pairs:
+        left, right = (
+            rational_value(read_formula(text, names=frozenset("abc")), field, Place())
+            for text in pair
+        )
+        if field.constant(left - right) is None:
+            value = field.exact_at(left - right, values).as_fraction()
+            relation = HOLDING[(value > 0) - (value < 0)][choice]
+            conditions.append(f"{pair[0]} {relation} {pair[1]}")
+    model = stated(
+        [["a*b*c"]],
+        parameters={name: {"value": value} for name, value in values.items()},
+        conditions=conditions,
+    )
+    assert model.values == ValueSet("", tuple(values.items()))
+    assert len(model.domain.conditions) == len(conditions)
