@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
+from typing import Any
 
 from flint import arb, fmpq, fmpq_poly
 
@@ -116,11 +117,8 @@ def _admissible(field: ParameterField, conditions: tuple[Comparison, ...], point
 def _real_roots(coefficients: tuple[Fraction, ...]) -> list[arb]:
     """The real roots of a polynomial over Q, highest coefficient first, growing."""
     numbers = [fmpq(c.numerator, c.denominator) for c in reversed(coefficients)]
-    whole = fmpq_poly(numbers).numer()
-    found = [
-        root.real
-        for factor, _ in whole.factor()[1]
-        for root, _ in factor.complex_roots()
-        if root.imag == 0
-    ]
+    found: list[arb] = []
+    for factor, _ in fmpq_poly(numbers).numer().factor()[1]:
+        pairs: Any = factor.complex_roots()  # with multiplicities, which the stubs leave out
+        found += [root.real for root, _ in pairs if root.imag == 0]
     return sorted(found, key=lambda ball: ball.mid())
