@@ -62,7 +62,7 @@ def _condition(text: object, key: str, formulas: Formulas) -> Condition:
             raise SettledConditionError(place, text, holds)
         return Condition(left, relation, right, comparison)
 
-    return formulas.source.read(text, key, work)
+    return formulas.read(text, key, work)
 
 
 def _comparison(element: Scalar, relation: str) -> Comparison:

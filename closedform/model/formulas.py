@@ -2,17 +2,21 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from functools import cached_property
+from typing import TypeVar
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.errors import Place
 from closedform.model.entries import DecimalText, kind_of, number_from
 from closedform.model.errors import WrongKindError
+from closedform.model.naming import Names
+from closedform.model.parameter_errors import NameHereError
 from closedform.model.parametric import Definition
 from closedform.model.source import Source
+from closedform.notation.errors import UndeclaredNameError
 from closedform.notation.expression import names_in
 from closedform.notation.parametric_errors import IrrationalNumberError
 from closedform.notation.plain import plain
@@ -21,6 +25,8 @@ from closedform.notation.reader import read_formula
 from closedform.notation.terms import surd_formula
 
 __all__ = ["Formulas", "Stated", "formula_text"]
+
+T = TypeVar("T")
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,16 +42,36 @@ class Formulas:
     """What is needed to read a formula in the parameters of a field.
 
     `meanings` are the elements that other names stand for: those of re-stated parameters.
+    `taken` are all names of the model, to say what one is that may not be used.
     """
 
     field: ParameterField
     meanings: Mapping[str, Scalar]
+    taken: Names
     source: Source
 
     @cached_property
     def names(self) -> frozenset[str]:
         """The names that may be used."""
         return frozenset(self.field.parameters) | frozenset(self.meanings)
+
+    def read(self, text: str, key: str, work: Callable[[Place], T]) -> T:
+        """Return what `work` makes of the text under a key, as `Source.read` does.
+
+        Raises NameHereError in the place of UndeclaredNameError for a name of the model.
+        """
+
+        def working(place: Place) -> T:
+            try:
+                return work(place)
+            except UndeclaredNameError as error:
+                kind = "the time" if error.name == self.taken.time else None
+                kind = kind or self.taken.taken.get(error.name)
+                if kind is None:
+                    raise
+                raise NameHereError(error.place, error.name, kind) from None
+
+        return self.source.read(text, key, working)
 
     def entry(self, value: object, key: str) -> Stated:
         """Return an entry of the matrix or an initial value: a formula, or a rational number.
@@ -59,7 +85,7 @@ class Formulas:
                 element = rational_value(formula, self.field, place, meanings=self.meanings)
                 return Stated(element, names_in(formula))
 
-            return self.source.read(value, key, work)
+            return self.read(value, key, work)
         number = number_from(value, key, self.source)
         if not number.is_rational:
             raise IrrationalNumberError(self.source.at(key), plain(surd_formula(number)))
@@ -79,7 +105,7 @@ class Formulas:
             )
             return tuple(Stated(weight, names_in(formula)) for weight in weights)
 
-        return self.source.read(text, key, work)
+        return self.read(text, key, work)
 
     def definition(self, name: str, value: object, key: str) -> Definition:
         """Return a name for a formula in the parameters."""
@@ -90,7 +116,7 @@ class Formulas:
             element = rational_value(formula, self.field, place, meanings=self.meanings)
             return Definition(name, formula, element)
 
-        return self.source.read(text, key, work)
+        return self.read(text, key, work)
 
 
 def formula_text(value: object, key: str, source: Source) -> str:

@@ -10,6 +10,7 @@ __all__ = [
     "BrokenConditionError",
     "ContradictionError",
     "MissingValueError",
+    "NameHereError",
     "NoParametersError",
     "RestatedValueError",
     "SettledConditionError",
@@ -152,6 +153,20 @@ class SettledConditionError(ModelError):
         if self.holds:
             return f"{quoted(self.found)} holds whatever the parameters are; take it away"
         return f"{quoted(self.found)} holds for no values of the parameters; correct it"
+
+
+class NameHereError(ModelError):
+    """A name of the model that stands for something else than a parameter; `kind` says what."""
+
+    def __init__(self, place: Place, name: str, kind: str) -> None:
+        super().__init__(place, name, kind)
+        self.name, self.kind = name, kind
+
+    def _paragraph(self) -> str:
+        text = f"'{self.name}' is {self.kind}, and here only parameters may stand"
+        if self.kind == "an abbreviation":
+            return f"{text}; write its formula, or move it from [abbreviations] to [substitute]"
+        return f"{text}: the system is linear, and its coefficients are constant"
 
 
 class ContradictionError(ModelError):

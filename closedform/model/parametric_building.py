@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import replace
 from itertools import chain
 
 from closedform.model.conditions import conditions_of, domain_of, requirements_of
@@ -36,6 +37,7 @@ def parametric_model(
     declared, names = parameters_of(mapping["parameters"], heading.names, source)
     formulas, restated, names = substituted(mapping.get("substitute", {}), declared, names, source)
     abbreviations, names = _abbreviations(mapping.get("abbreviations", {}), formulas, names)
+    formulas = replace(formulas, taken=names)
     states, field = heading.states, formulas.field
     matrix = matrix_of(mapping["matrix"], len(states), source, formulas.entry)
     initial = initial_of(mapping["initial"], states, source, formulas.entry)
@@ -97,7 +99,7 @@ def _abbreviations(
     meanings = dict(formulas.meanings)
     found = []
     for name, formula in table.items():
-        reading = Formulas(formulas.field, meanings, source)
+        reading = replace(formulas, meanings=meanings)
         definition = reading.definition(name, formula, f"abbreviations.{name}")
         meanings = {**meanings, name: definition.value}
         found.append(definition)

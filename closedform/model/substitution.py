@@ -50,7 +50,7 @@ def substituted(
     field = ParameterField(parameters=remaining)
     meanings: dict[str, Scalar] = {}
     for name in order:
-        reading = Formulas(field, meanings, source)
+        reading = Formulas(field, meanings, names, source)
         meanings[name] = reading.definition(name, table[name], f"substitute.{name}").value
     for parameter in declared:
         if parameter.name in table and parameter.value is not None:
@@ -61,7 +61,7 @@ def substituted(
     restated = tuple(
         _described(Definition(name, formulas[name], meanings[name]), declared) for name in table
     )
-    return Formulas(field, meanings, source), restated, names
+    return Formulas(field, meanings, names, source), restated, names
 
 
 def _formula(name: str, value: object, known: frozenset[str], source: Source) -> Expression:

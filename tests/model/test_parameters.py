@@ -102,7 +102,11 @@ BAD: list[tuple[list[Change], type[InputError], str]] = [
         formula_errors.UndeclaredNameError,
         "matrix[2][2], line 5, column 14: the name 'd' is not declared; declared here: c, k, m, x0",
     ),
-    ([('"-c/m"', '"-c/t"')], formula_errors.UndeclaredNameError, "the name 't' is not declared"),
+    (
+        [('"-c/m"', '"-c/t"')],
+        wrong.NameHereError,
+        "matrix[2][2], line 5, column 16: 't' is the time",
+    ),
     ([('"-c/m"', '"c/(m-m)"')], formula_errors.DivisionByZeroError, "line 5, column 13: 'c/(m"),
     ([('"-c/m"', '"sqrt(c)"')], parametric_errors.ParameterRootError, "matrix[2][2], line 5"),
     ([('"x0", 0', '"x0", "sqrt(2)"')], parametric_errors.IrrationalNumberError, "initial[2]"),
@@ -113,7 +117,22 @@ BAD: list[tuple[list[Change], type[InputError], str]] = [
     ),
     ([('"k*x"', '"k*x + c"')], formula_errors.ConstantTermError, "the constant 'c'"),
     ([('"k*x"', '"q*x"')], formula_errors.UndeclaredNameError, "outputs.force, line 23, column 10"),
-    ([('"c/(2*m)"', '"c/(2*x)"')], formula_errors.UndeclaredNameError, "abbreviations.delta, line"),
+    ([('"c/(2*m)"', '"c/(2*x)"')], wrong.NameHereError, "abbreviations.delta, line 25, column 15"),
+    (
+        [('"-c/m"', '"2*delta"')],
+        wrong.NameHereError,
+        "'delta' is an abbreviation, and here only par",
+    ),
+    (
+        [("c^2 < 4*k*m", "c < delta")],
+        wrong.NameHereError,
+        "conditions[1], line 8, column 20: 'delta'",
+    ),
+    (
+        [('"x0", 0', '"x0", "x"')],
+        wrong.NameHereError,
+        "initial[2], line 7, column 19: 'x' is a state",
+    ),
     (
         [('"x0", 0', "0, 0"), ("c = 0\nx0 = 1", "c = 0"), ('x0 = "1/3"\n', "")],
         wrong.UnusedParameterError,
