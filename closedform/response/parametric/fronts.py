@@ -30,6 +30,8 @@ def fronts_of(amounts: Sequence[Factored], *, few: bool = False) -> tuple[Factor
     denominator, with the number or without; each takes the sign of the first amount, or its
     opposite.  `few` leaves out the signs and what is rarely the best.
     """
+    if not amounts:
+        return (UNIT,)
     factors = list(dict.fromkeys(f for amount in amounts for f, _ in amount.factors))
     above, below, common = [], [], []
     for factor in factors:
