@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from closedform.response.response import Response
+from closedform.verification.chains import chain_check, inverse_check, routes_check
 from closedform.verification.eigenvalues import NamedValues, eigenvalue_check, name_check
 from closedform.verification.enclosures import (
     References,
@@ -11,15 +12,12 @@ from closedform.verification.enclosures import (
     trial_times,
 )
 from closedform.verification.identities import (
-    chain_check,
     characteristic_polynomial_check,
     determinant_check,
     differential_equation_check,
     initial_value_check,
-    inverse_check,
     model_check,
     output_check,
-    routes_check,
     state_check,
 )
 from closedform.verification.record import Check, VerificationRecord

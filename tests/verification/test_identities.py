@@ -8,13 +8,12 @@ import pytest
 
 import closedform
 from closedform.response.response import Response
+from closedform.verification.chains import chain_check, routes_check
 from closedform.verification.identities import (
-    chain_check,
     characteristic_polynomial_check,
     determinant_check,
     differential_equation_check,
     initial_value_check,
-    routes_check,
 )
 from closedform.verification.verify import prove
 from tests.response.systems import KINDS, response_to

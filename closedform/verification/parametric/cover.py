@@ -1,0 +1,175 @@
+"""That the cases cover the domain: no point of it is left out silently.
+
+At every branch the points of the domain fall apart into those where no exceptional
+polynomial vanishes, which its formulas cover, and those where one does.  So it is enough
+that each branch's list is complete, and that each item of it is excluded, or leads to a
+branch on which it vanishes, or is reported as not covered.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from fractions import Fraction
+from random import Random
+
+from closedform.algebra.branches import Branch
+from closedform.algebra.domain import Comparison
+from closedform.algebra.exceptional import discriminant_of
+from closedform.algebra.field import Scalar
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.surds import SurdSum
+from closedform.errors import Place
+from closedform.notation import plain, read_formula
+from closedform.notation.rational import rational_value
+from closedform.response.parametric.case import Case
+from closedform.response.parametric.conditions import WrittenComparison
+from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.parametric.identities import vanishes_on
+from closedform.verification.record import Check
+
+__all__ = ["applying_cases", "cover_check", "cover_points_check"]
+
+_SMALL = tuple(Fraction(n) for n in (1, 2, 3, -1, -2, 0))
+_SOUGHT = 40
+
+
+def cover_check(response: ParametricResponse) -> Check:
+    """Every branch's exceptional set is complete, and accounted for."""
+    item = "the cases cover the domain"
+    open_ones = 0
+    for branch in response.branches:
+        listed = {e.polynomials[0] for e in branch.exceptional if len(e.polynomials) == 1}
+        for polynomial in _must_not_vanish(response.model.field, branch):
+            if polynomial not in listed:
+                how = f"{polynomial} may vanish on branch {branch.number} and is not listed"
+                return Check(item, "refuted", how)
+        for exceptional in branch.exceptional:
+            if exceptional.fate == "not covered":
+                open_ones += 1
+            elif exceptional.fate == "branch":
+                target = response.branches[exceptional.branch or 0]
+                values = target.values
+                for polynomial in exceptional.polynomials:
+                    left = response.model.field.substituted(polynomial, values)
+                    if not vanishes_on(target, left):
+                        how = f"{polynomial} does not vanish on branch {target.number}"
+                        return Check(item, "refuted", how)
+            elif exceptional.argument is None and not exceptional.contradicted:
+                return Check(item, "refuted", f"no reason excludes {exceptional.polynomials[0]}")
+    split = (
+        "on every branch either none of its denominators and discriminants vanishes, and its "
+        "formulas hold, or one does, and that is excluded by the domain or is a branch of its own"
+    )
+    if open_ones:
+        split += f", but for {open_ones} listed as not covered"
+    return Check(item, "proved", split)
+
+
+def _must_not_vanish(field: ParameterField, branch: Branch) -> Iterator[Scalar]:
+    """The irreducible polynomials among denominators and discriminants, found once more."""
+    for term, structure in zip(branch.exponential.terms, branch.structures, strict=True):
+        elements = [
+            e
+            for residue in term.residues
+            for matrix in residue.coefficients
+            for row in matrix.to_list()
+            for e in row
+            if e
+        ]
+        for element in elements:
+            yield from _factors(field, field.of_polynomial(element.denom))
+        factor = term.factor
+        if factor.degree > 2 and (structure is None or structure.simple is None):
+            squares = factor.roots.squares if factor.roots.form == "even" else None
+            roots_of = factor.p if squares is None else squares
+            yield from _factors(field, field.of_polynomial(discriminant_of(field, roots_of).numer))
+
+
+def _factors(field: ParameterField, element: Scalar) -> Iterator[Scalar]:
+    if field.constant(element) is None:
+        for polynomial, _ in field.factored(element).factors:
+            yield field.of_polynomial(polynomial)
+
+
+def cover_points_check(response: ParametricResponse) -> Check:
+    """At points of the domain, many of them on exceptional sets, exactly one case applies."""
+    item = "one case applies"
+    points = [*response.domain.sample(_SOUGHT // 2, seed=7), *_small_points(response)]
+    if not points:
+        return Check(item, "not attempted", "no point of the domain was found", essential=False)
+    complete = all(e.fate != "not covered" for b in response.branches for e in b.exceptional)
+    for point in points:
+        exact = {name: SurdSum.rational(value) for name, value in point.items()}
+        cases = applying_cases(response, exact)
+        if len(cases) > 1 or (complete and not cases):
+            where = ", ".join(f"{name} = {value}" for name, value in point.items())
+            return Check(item, "refuted", f"{len(cases)} cases apply at {where}")
+    return Check(
+        item,
+        "proved",
+        f"the conditions as written were read back and decided at {len(points)} points of the "
+        "domain, some of them on exceptional sets: exactly one case applies"
+        + ("" if complete else ", or none where that is said"),
+    )
+
+
+def _small_points(response: ParametricResponse) -> list[dict[str, Fraction]]:
+    """Points with small values, so that parameters often agree."""
+    names = response.model.field.parameters
+    random = Random(3)  # noqa: S311  the same points each time, no secret
+    found = []
+    for _ in range(20 * _SOUGHT):
+        point = {name: random.choice(_SMALL) for name in names}
+        if all(_holds_at(response.model.field, c, point) for c in response.domain.conditions):
+            found.append(point)
+        if len(found) == _SOUGHT:
+            break
+    return found
+
+
+def _holds_at(field: ParameterField, comparison: Comparison, point: dict[str, Fraction]) -> bool:
+    try:
+        value = field.exact_at(
+            comparison.element, {n: SurdSum.rational(v) for n, v in point.items()}
+        )
+    except ZeroDivisionError:
+        return False
+    number = value.as_fraction()
+    return {
+        ">": number > 0,
+        ">=": number >= 0,
+        "!=": number != 0,
+        "=": number == 0,
+    }[comparison.relation]
+
+
+def applying_cases(response: ParametricResponse, values: dict[str, SurdSum]) -> tuple[Case, ...]:
+    """Return the cases whose conditions, as they are written, hold at rational values."""
+    return tuple(
+        case
+        for case in response.cases
+        if all(_is_true(response.model.field, c, values) for c in case.conditions)
+    )
+
+
+def _is_true(
+    field: ParameterField, comparison: WrittenComparison, values: dict[str, SurdSum]
+) -> bool:
+    """Decide a comparison from its text.  Where a side is not defined it does not hold."""
+    sides = []
+    for side in (comparison.left, comparison.right):
+        read = read_formula(plain(side), names=frozenset(field.parameters))
+        element = rational_value(read, field, Place())
+        try:
+            sides.append(field.exact_at(element, values).as_fraction())
+        except ZeroDivisionError:
+            return False
+    left, right = sides
+    return {
+        "<": left < right,
+        ">": left > right,
+        "<=": left <= right,
+        ">=": left >= right,
+        "!=": left != right,
+        "==": left == right,
+    }[comparison.sign]

@@ -1,0 +1,123 @@
+"""A case in numbers: its names at a point, from their definitions alone."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import Any
+
+from flint import acb, acb_mat, acb_poly, arb, arb_mat, ctx
+
+from closedform.algebra.enclosure import ball_of
+from closedform.algebra.field import FieldMatrix
+from closedform.algebra.parameter_field import ParameterField
+from closedform.model.parametric import ParametricModel
+from closedform.notation import enclose, plain, read_formula
+from closedform.notation.expression import Expression
+from closedform.response.parametric.case import Case
+from closedform.response.parametric.points import Point
+from closedform.response.parametric.quantities import RootDefinition
+
+__all__ = ["NamesAt", "enclosed_matrix", "exponential_at", "read_back", "trial_times"]
+
+_MOST_BITS = 1 << 14
+
+
+def read_back(model: ParametricModel, case: Case, formula: Expression) -> Expression:
+    """Return a formula of a case as it is read from its text."""
+    names = {model.time, *model.field.parameters, *(q.name for q in case.quantities)}
+    return read_formula(plain(formula), names=frozenset(names))
+
+
+@dataclass(frozen=True)
+class NamesAt:
+    """The parameters and the named quantities of a case at one of its points."""
+
+    model: ParametricModel
+    case: Case
+    point: Point
+
+    def balls(self) -> dict[str, arb]:
+        """Return a ball for every name, at FLINT's current precision or close to it."""
+        with ctx.extraprec(64):
+            known = self.point.balls()
+            for quantity in self.case.quantities:
+                if quantity.formula is not None:
+                    formula = read_back(self.model, self.case, quantity.formula)
+                    known[quantity.name] = enclose(formula, known)
+                elif quantity.root is not None:
+                    known[quantity.name] = _root(self.model.field, quantity.root, known)
+        return known
+
+
+def _root(field: ParameterField, root: RootDefinition, known: Mapping[str, arb]) -> arb:
+    """The real root with the place that is stated, by real part and then imaginary part.
+
+    The precision grows until the roots are told apart; a root that is not real, or has no
+    certain place, has no value: a ball that is not finite.
+    """
+    bits = ctx.prec
+    while bits <= _MOST_BITS:
+        with ctx.workprec(bits):
+            coefficients = [field.enclose_at(c, known) for c in reversed(root.polynomial)]
+            roots = _isolated(acb_poly(coefficients))
+            if roots is not None:
+                placed = _placed(roots, root.which, last=2 * bits > _MOST_BITS)
+                if placed is not None:
+                    return placed
+        bits *= 2
+    return arb("nan")
+
+
+def _isolated(polynomial: acb_poly) -> list[acb] | None:
+    try:
+        roots: Any = polynomial.roots()
+    except ValueError:  # not told apart at this precision
+        return None
+    return list(roots)
+
+
+def _placed(roots: list[acb], which: int, *, last: bool) -> arb | None:
+    """The `which`-th root, if it is real: the only one near its place on the real axis.
+
+    Real parts count as equal where the finest precision does not tell them apart.
+    """
+    for root in roots:
+        if not root.imag.contains(0):
+            continue
+        mirror = [z for z in roots if z is not root and z.overlaps(root.conjugate())]
+        if mirror:  # a pair too close to the axis to tell
+            return None
+        below = [z for z in roots if z is not root and z.real < root.real]
+        above = [z for z in roots if z is not root and z.real > root.real]
+        same = [z for z in roots if z is not root and z.real.overlaps(root.real)]
+        if len(below) + len(above) + len(same) != len(roots) - 1:
+            return None
+        # a pair that may share the real part stands around the root: one below, one above
+        place = len(below) + len(same) // 2 + 1
+        if place == which and (not same or (last and len(same) == 2)):
+            return root.real
+    return None
+
+
+def enclosed_matrix(field: ParameterField, rows: FieldMatrix, known: Mapping[str, arb]) -> arb_mat:
+    """Return balls for the entries of a matrix over the field."""
+    height, width = rows.shape
+    entries = [field.enclose_at(e, known) for row in rows.to_list() for e in row]
+    return arb_mat(height, width, entries)
+
+
+def exponential_at(matrix: arb_mat, t: Fraction) -> arb_mat:
+    """Return balls for e^(matrix t) by the scaling and Taylor series of acb_mat."""
+    value = acb_mat(matrix * ball_of(t)).exp()
+    return arb_mat(value.nrows(), value.ncols(), [e.real for e in value.entries()])
+
+
+def trial_times(matrix: arb_mat) -> tuple[Fraction, ...]:
+    """Return two instants near 1/|A|: a third of a power of 2, and that power of 2."""
+    largest = max((abs(e).mid() for e in matrix.entries()), key=float)
+    mantissa, exponent = largest.man_exp()
+    order = int(mantissa).bit_length() + int(exponent) if mantissa else 0
+    unit = Fraction(2) ** -order
+    return (unit / 3, unit)
