@@ -20,6 +20,7 @@ from tests.parametric.plain_reader import Number, ball_of, names_in, parse, valu
 __all__ = [
     "DisagreementError",
     "NotCoveredError",
+    "check_conditions",
     "check_names",
     "check_record",
     "covering_cases",
@@ -311,6 +312,21 @@ def formulas_of(record: Record) -> list[tuple[dict[str, Any], str]]:
             *case["outputs"].values(),
         )
     ]
+
+
+def check_conditions(record: Record) -> None:
+    """Raise if a case asks for two things of the same sides that cannot both be."""
+    for case in record["cases"]:
+        asked: dict[tuple[str, str], set[int]] = {}
+        for part in case["condition"].split(" and "):
+            pieces = [piece.strip() for piece in RELATION.split(part)]
+            if len(pieces) == 3:
+                left, relation, right = pieces
+                signs = {sign for sign in (-1, 0, 1) if _related(sign, relation)}
+                left_over = asked.setdefault((left, right), {-1, 0, 1})
+                left_over &= signs
+                if not left_over:
+                    raise DisagreementError(f"{case['condition']!r} holds nowhere")
 
 
 def check_names(record: Record) -> None:

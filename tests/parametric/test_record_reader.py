@@ -20,6 +20,7 @@ from tests.parametric.plain_reader import (
 from tests.parametric.record_reader import (
     DisagreementError,
     NotCoveredError,
+    check_conditions,
     check_names,
     check_record,
     covering_cases,
@@ -280,6 +281,14 @@ def test_what_is_not_covered_is_told_apart_from_a_gap() -> None:
 def test_a_name_that_nothing_defines_is_told() -> None:
     with pytest.raises(DisagreementError, match="uses nu"):
         check_names(changed(turning(), "cos(omega*t)", "cos(nu*t)"))
+
+
+def test_a_condition_that_holds_nowhere_is_told() -> None:
+    check_conditions(two_stages())
+    check_conditions(oscillator())
+    for old, new in (("a != b", "a != b and a == b"), ("a = b", "a < b and 2 > 1 and a > b")):
+        with pytest.raises(DisagreementError, match="holds nowhere"):
+            check_conditions(changed(two_stages(), old, new))
 
 
 @pytest.mark.parametrize(
