@@ -34,9 +34,10 @@ def shortest_of(
 ) -> T:
     """Return the item whose formula has the fewest operations.
 
-    Of equals, the one with the fewest names, then with the fewest sums inside of other
-    operations, then with the fewest minus signs in these, then with the fewest differences
-    whose names come in the other order; then the earlier.
+    Of equals, the one with the fewest fractions within fractions, then with the fewest names,
+    then with the fewest sums inside of other operations, then with the fewest minus signs in
+    these, then with the fewest differences whose names come in the other order; then the
+    earlier.
     """
     shown = [(item, formula_of(item)) for item in items]
     counts = [operations(formula) for _, formula in shown]
@@ -52,28 +53,36 @@ def places_of(names: Iterable[str]) -> dict[str, int]:
     return {name: place for place, name in enumerate(names)}
 
 
-def _taste(formula: Expression, places: Mapping[str, int]) -> tuple[int, int, int, int]:
-    names = sums = signs = turned = 0
-    waiting: list[tuple[Expression, bool]] = [(formula, False)]
+def _taste(formula: Expression, places: Mapping[str, int]) -> tuple[int, int, int, int, int]:
+    fractions = names = sums = signs = turned = 0
+    waiting: list[tuple[Expression, str]] = [(formula, "alone")]
     while waiting:
-        part, inside = waiting.pop()
+        part, within = waiting.pop()
         match part:
             case Name():
                 names += 1
             case Number():
                 pass
             case Sum(terms):
-                sums += inside
-                signs += inside and sum(isinstance(term, Negation) for term in terms)
+                fractions += within == "fraction" and sum(map(_is_fraction, terms))
+                sums += within != "alone"
+                signs += within != "alone" and sum(isinstance(term, Negation) for term in terms)
                 turned += len(terms) == 2 and _is_turned(*terms, places)
-                waiting += [(t.operand if isinstance(t, Negation) else t, True) for t in terms]
+                waiting += [(t.operand if isinstance(t, Negation) else t, "sum") for t in terms]
             case Product(factors):
-                waiting += [(factor, True) for factor in factors]
+                place = within if within == "fraction" else "product"
+                waiting += [(factor, place) for factor in factors]
             case Negation(operand) | Call(_, operand):
-                waiting.append((operand, True))
-            case Quotient(first, second) | Power(first, second):
-                waiting += [(first, True), (second, True)]
-    return names, sums, signs, turned
+                waiting.append((operand, "product"))
+            case Quotient(above, below):
+                waiting += [(above, "fraction"), (below, "fraction")]
+            case Power(base, exponent):
+                waiting += [(base, "product"), (exponent, "product")]
+    return fractions, names, sums, signs, turned
+
+
+def _is_fraction(term: Expression) -> bool:
+    return isinstance(term.operand if isinstance(term, Negation) else term, Quotient)
 
 
 def _is_turned(first: Expression, second: Expression, places: Mapping[str, int]) -> bool:
