@@ -7,11 +7,10 @@ asked in ``closedform.algebra.domain``.
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass
 from fractions import Fraction
-from functools import cached_property, reduce
-from math import gcd, lcm
+from functools import cached_property, lru_cache, reduce
 from operator import mul
 from typing import Any
 
@@ -20,6 +19,7 @@ from sympy import Symbol
 from sympy.polys.domains import QQ
 
 from closedform.algebra.field import BaseField, Scalar, rational
+from closedform.algebra.polynomial_factors import PolynomialTerms, irreducible_factors
 from closedform.algebra.surds import SurdSum
 
 __all__ = ["Factored", "ParameterField", "ParameterPolynomial"]
@@ -107,10 +107,7 @@ class ParameterField(BaseField):
         The factors come in the order of the parameters in them, simple ones first, which
         does not hang on how the element was found.
         """
-        above, below = _factors(element.numer), _factors(element.denom)
-        factors = [(f, e) for f, e in above.factors] + [(f, -e) for f, e in below.factors]
-        factors.sort(key=lambda pair: _order(pair[0]))
-        return Factored(above.content / below.content, tuple(factors))
+        return _factored(element)
 
     def product_of(self, parts: Factored) -> Scalar:
         """Return the element that was taken apart."""
@@ -187,33 +184,27 @@ class ParameterField(BaseField):
         return [(int(c.numerator), int(c.denominator), 1) for c in terms]
 
 
-def _factors(polynomial: ParameterPolynomial) -> Factored:
-    content, factors = polynomial.factor_list()
-    scale = rational(content)
-    made = []
-    for factor, exponent in factors:
-        whole, size = _whole(factor)
-        scale *= size**exponent
-        made.append((whole, exponent))
-    return Factored(scale, tuple(made))
+@lru_cache(maxsize=16384)
+def _factored(element: Scalar) -> Factored:
+    number = Fraction(1)
+    factors: list[tuple[ParameterPolynomial, int]] = []
+    for polynomial, sign in ((element.numer, 1), (element.denom, -1)):
+        content, found = irreducible_factors({m: rational(c) for m, c in polynomial.iterterms()})
+        number *= content**sign
+        factors += [(_polynomial(polynomial.ring, f), e * sign) for f, e in found]
+    factors.sort(key=lambda pair: _order(pair[0]))
+    return Factored(number, tuple(factors))
 
 
-def _whole(polynomial: ParameterPolynomial) -> tuple[ParameterPolynomial, Fraction]:
-    """Return a polynomial with whole coefficients and a leading one > 0, and what it lost."""
-    numbers = [rational(c) for c in polynomial.coeffs()]
-    below = lcm(*(n.denominator for n in numbers))
-    size = Fraction(gcd(*(int(n * below) for n in numbers)), below)
-    if rational(polynomial.LC) < 0:
-        size = -size
-    return polynomial.quo_ground(QQ(size.numerator, size.denominator)), size
+def _polynomial(ring: Any, terms: PolynomialTerms) -> ParameterPolynomial:
+    return ring.from_dict({m: QQ(c.numerator, c.denominator) for m, c in terms.items()})
 
 
 def _order(polynomial: ParameterPolynomial) -> tuple[object, ...]:
-    monomials: Iterable[tuple[int, ...]] = polynomial.monoms()
-    degrees = [sum(m) for m in monomials]
+    monomials: list[tuple[int, ...]] = polynomial.monoms()
     return (
-        max(degrees),
-        len(degrees),
-        [tuple(-e for e in m) for m in polynomial.monoms()],
-        [str(c) for c in polynomial.coeffs()],
+        max(map(sum, monomials)),
+        len(monomials),
+        [tuple(-e for e in m) for m in monomials],
+        [rational(c) for c in polynomial.coeffs()],
     )
