@@ -178,7 +178,7 @@ def _written(
 
 
 def _sum(field: ParameterField, groups: Sequence[_Group], time: str) -> Expression:
-    """The groups one by one, or first those that share a long denominator that others lack."""
+    """The groups one by one, or those first that share a denominator that others lack."""
     forms = [sum_of([_written_group(field, group, time) for group in groups])]
     for sharing in _sharing(groups) if len(groups) > 2 else ():
         others = [group for group in groups if group not in sharing]
@@ -188,18 +188,20 @@ def _sum(field: ParameterField, groups: Sequence[_Group], time: str) -> Expressi
 
 
 def _sharing(groups: Sequence[_Group]) -> list[list[_Group]]:
-    """Return sets of at least two groups, not all, whose amounts share a factor below."""
-    found = []
-    below = {f: None for g in groups for p in g.parts for f, e in p.amount.factors if e < 0}
-    for factor in below:
-        sharing = [
-            group
-            for group in groups
-            if all(dict(part.amount.factors).get(factor, 0) < 0 for part in group.parts)
+    """Return sets of at least two groups, not all, with the same factors of two terms below.
+
+    Sets that share only some of these factors would be shorter at times, but the sum loses
+    the likeness of its terms.
+    """
+    alike: dict[frozenset[object], list[_Group]] = {}
+    for group in groups:
+        long = [
+            frozenset((f, e) for f, e in part.amount.factors if e < 0 and len(f) > 1)
+            for part in group.parts
         ]
-        if 1 < len(sharing) < len(groups) and sharing not in found:
-            found.append(sharing)
-    return found
+        if long[0] and all(factors == long[0] for factors in long):
+            alike.setdefault(long[0], []).append(group)
+    return [sharing for sharing in alike.values() if 1 < len(sharing) < len(groups)]
 
 
 def _written_group(field: ParameterField, group: _Group, time: str) -> Expression:
