@@ -38,11 +38,15 @@ class Rewriting:
 
 @dataclass(frozen=True)
 class Shortest:
-    """Functions as terms after rewriting, their formulas, and the abbreviations in them."""
+    """Functions as terms after rewriting, their formulas, and the abbreviations in them.
+
+    `rewritings` are those that were applied, in this order.
+    """
 
     functions: tuple[tuple[Term, ...], ...]
     formulas: tuple[Expression, ...]
     names: tuple[str, ...]
+    rewritings: tuple[Rewriting, ...] = ()
 
 
 def rewriting_for(
@@ -172,7 +176,8 @@ class _Search:
             tuple(_rewritten(self.field, term, used) for term in terms) for terms in self.functions
         )
         formulas = tuple(closed_form(self.field, terms, self.time) for terms in functions)
-        return Shortest(functions, formulas, self._names_in(functions))
+        applied = tuple(rewriting for rewriting, _ in used)
+        return Shortest(functions, formulas, self._names_in(functions), applied)
 
     def _names_in(self, functions: Sequence[Sequence[Term]]) -> tuple[str, ...]:
         """Return the abbreviations in the functions, and those in their definitions."""

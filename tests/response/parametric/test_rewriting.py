@@ -74,6 +74,7 @@ def test_parameters_that_occur_once_are_given(value: str, given_parameters: list
 def test_a_cheap_definition_is_used() -> None:
     result = shortest(FIELD, oscillator(), DELTA, {"delta": 2}, "t")
     assert result.names == ("delta",)
+    assert [r.parameter for r in result.rewritings] == ["c"]
     assert plain(result.formulas[4]) == (
         "exp(-delta*t)*(x0*cos(omega_d*t) + (v0 + delta*x0)*sin(omega_d*t)/omega_d)"
     )
