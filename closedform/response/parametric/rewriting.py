@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
+from dataclasses import field as dataclass_field
 from functools import lru_cache
 from itertools import product
 from math import prod
@@ -126,7 +127,7 @@ def shortest(
             if rewriting.name == name:
                 choices += [(rewriting, "everywhere"), (rewriting, "rates")]
     values = {r.name: r.value for r in rewritings}
-    search = _Search(field, functions, names, values, definitions_cost, time, {})
+    search = _Search(field, functions, names, values, definitions_cost, time)
     if prod(map(len, options)) <= TRIED:
         best = min(product(*options), key=search.cost)
     else:
@@ -150,9 +151,9 @@ def _improved(options: Sequence[Sequence[Choice]], search: _Search) -> tuple[Cho
     return best
 
 
-@dataclass(frozen=True)
+@dataclass
 class _Search:
-    """What the choices are tried on; `results` keeps what was written."""
+    """What the choices are tried on; `results` keeps what was written, `least` its cost."""
 
     field: ParameterField
     functions: Sequence[Sequence[Term]]
@@ -160,24 +161,36 @@ class _Search:
     values: Mapping[str, Scalar]
     definitions_cost: Mapping[str, int]
     time: str
-    results: dict[tuple[Choice, ...], Shortest]
+    costs: dict[tuple[Choice, ...], int] = dataclass_field(default_factory=dict)
+    results: dict[tuple[Choice, ...], Shortest] = dataclass_field(default_factory=dict)
+    least: int | None = None
 
     def cost(self, choices: tuple[Choice, ...]) -> int:
-        """Return the operations of formulas and definitions; of equals, fewer names win."""
-        result = self.results.get(choices)
-        if result is None:
-            result = self.results[choices] = self._written(choices)
-        definitions = sum(self.definitions_cost[name] for name in result.names)
-        return definitions + sum(map(operations, result.formulas))
+        """Return the operations of formulas and definitions; more than the least, if it is more.
 
-    def _written(self, choices: tuple[Choice, ...]) -> Shortest:
+        Formulas are not written any more once the least is passed.
+        """
+        if choices not in self.costs:
+            self.costs[choices] = self._tried(choices)
+        return self.costs[choices]
+
+    def _tried(self, choices: tuple[Choice, ...]) -> int:
         used = [choice for choice in choices if choice is not None]
         functions = tuple(
             tuple(_rewritten(self.field, term, used) for term in terms) for terms in self.functions
         )
-        formulas = tuple(closed_form(self.field, terms, self.time) for terms in functions)
+        names = self._names_in(functions)
+        cost = sum(self.definitions_cost[name] for name in names)
+        formulas: list[Expression] = []
+        for terms in functions:
+            formulas.append(closed_form(self.field, terms, self.time))
+            cost += operations(formulas[-1])
+            if self.least is not None and cost > self.least:
+                return cost
         applied = tuple(rewriting for rewriting, _ in used)
-        return Shortest(functions, formulas, self._names_in(functions), applied)
+        self.results[choices] = Shortest(functions, tuple(formulas), names, applied)
+        self.least = cost
+        return cost
 
     def _names_in(self, functions: Sequence[Sequence[Term]]) -> tuple[str, ...]:
         """Return the abbreviations in the functions, and those in their definitions."""
