@@ -6,34 +6,60 @@ The layout is that of templates/record/record.schema.json, where every key is de
 from __future__ import annotations
 
 import json
+from collections.abc import Sequence
 from typing import Any
 
 from closedform.algebra.exponential import ModalTerm
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
 from closedform.algebra.surds import SurdSum
+from closedform.document.parametric_record import checks_as_data, parametric_record
 from closedform.notation.plain import plain
 from closedform.notation.terms import surd_formula
 from closedform.response.names import Definition, NamedConstant, Radical, ResiduePart
+from closedform.response.parametric.numbers import NumbersAt
+from closedform.response.parametric.response import ParametricResponse
 from closedform.response.response import LARGEST_WRITTEN_OUT, Response
 from closedform.response.sampling import constant_decimal
+from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.record import VerificationRecord
 
-__all__ = ["LAYOUT", "record_of", "record_text"]
+__all__ = ["DIGITS", "LAYOUT", "record_of", "record_text"]
 
 LAYOUT = "closedform record 1"
 DIGITS = 40
 
 
-def record_text(response: Response, record: VerificationRecord) -> str:
+def record_text(
+    response: Response | ParametricResponse,
+    record: VerificationRecord | CaseRecords,
+    numbers: Sequence[NumbersAt] = (),
+) -> str:
     """Return the record as JSON text: the same response always gives the same bytes."""
-    return json.dumps(record_of(response, record), indent=1, ensure_ascii=False) + "\n"
+    data = record_of(response, record, numbers)
+    return json.dumps(data, indent=1, ensure_ascii=False) + "\n"
 
 
-def record_of(response: Response, record: VerificationRecord) -> dict[str, Any]:
-    """Return the record as plain data: texts, lists and tables."""
+def record_of(
+    response: Response | ParametricResponse,
+    record: VerificationRecord | CaseRecords,
+    numbers: Sequence[NumbersAt] = (),
+) -> dict[str, Any]:
+    """Return the record as plain data: texts, lists and tables.
+
+    `record` is of the kind of the response; `numbers` belong to a model with parameters.
+    Raises TypeError for a record of the other kind.
+    """
+    match response, record:
+        case Response(), VerificationRecord():
+            return {"layout": LAYOUT, **_numeric_record(response, record)}
+        case ParametricResponse(), CaseRecords():
+            return {"layout": LAYOUT, **parametric_record(response, record, numbers)}
+    raise TypeError(f"{type(record).__name__} is no record of {response!r}")
+
+
+def _numeric_record(response: Response, record: VerificationRecord) -> dict[str, Any]:
     model, forms = response.model, response.closed_forms
     written: dict[str, Any] = {
-        "layout": LAYOUT,
         "title": model.title,
         "time": model.time,
         "states": list(model.states),
@@ -62,9 +88,7 @@ def record_of(response: Response, record: VerificationRecord) -> dict[str, Any]:
         output.name: plain(formula)
         for output, formula in zip(model.outputs, forms.outputs, strict=True)
     }
-    written["verification"] = [
-        {"item": check.item, "outcome": check.outcome, "how": check.how} for check in record.checks
-    ]
+    written["verification"] = checks_as_data(record)
     return written
 
 

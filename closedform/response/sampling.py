@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from fractions import Fraction
 from math import floor
 
-from flint import arb, ctx
+from flint import acb, arb, ctx
 
 from closedform.algebra.enclosure import (
     ball_of,
@@ -21,7 +22,14 @@ from closedform.algebra.surds import SurdSum
 from closedform.response.names import NamedConstant, Radical, RootPart
 from closedform.response.response import Response
 
-__all__ = ["constant_decimal", "default_times", "isolating_interval", "sampled", "surd_decimal"]
+__all__ = [
+    "constant_decimal",
+    "default_times",
+    "isolating_interval",
+    "sampled",
+    "suitable_times",
+    "surd_decimal",
+]
 
 _DEFAULT_STEPS = (0, 1, 2, 4, 8, 16)
 _FEWEST_FIGURES = 4
@@ -98,7 +106,14 @@ def _decimals_around(ball: arb, digits: int) -> tuple[Fraction, Fraction] | None
 
 
 def default_times(response: Response) -> tuple[SurdSum, ...]:
-    """Return six instants that suit a model without times of its own.
+    """Return six instants that suit a model without times of its own."""
+    return suitable_times(
+        lambda: [z for f in response.spectrum.factors for z in f.roots.enclosures()]
+    )
+
+
+def suitable_times(eigenvalues: Callable[[], list[acb]]) -> tuple[SurdSum, ...]:
+    """Return six instants that suit these eigenvalues, enclosed at FLINT's current precision.
 
     The step is 1, 2 or 5 times a power of ten, at most half the longest time constant and
     an eighth of the longest period; and nothing grows by more than e^30 to the last instant.
@@ -106,7 +121,7 @@ def default_times(response: Response) -> tuple[SurdSum, ...]:
     bits = 64
     while True:
         with ctx.workprec(bits):
-            roots = [z for f in response.spectrum.factors for z in f.roots.enclosures()]
+            roots = eigenvalues()
             rates = [z.real for z in roots if z.real != 0]
             turns = [abs(z.imag) for z in roots if z.imag != 0]
             if all(x.rel_accuracy_bits() >= _FIGURES_OF_RATES for x in (*rates, *turns)):

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from itertools import product
 
-from closedform.algebra.branches import Branch, case_tree, put_in
+from closedform.algebra.branches import Branch, case_tree, put_in, uncovered
 from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.field import FieldMatrix
 from closedform.algebra.parameter_field import ParameterField
@@ -13,6 +13,11 @@ from closedform.algebra.regimes import regimes_of
 from closedform.model.parametric import ParametricModel
 from closedform.notation.plain import plain
 from closedform.response.parametric.case import Case, written_case
+from closedform.response.parametric.conditions import (
+    WrittenComparison,
+    written_comparison,
+    written_equation,
+)
 
 __all__ = ["ParametricResponse", "respond_in_cases"]
 
@@ -32,6 +37,22 @@ class ParametricResponse:
     initial: FieldMatrix
     branches: tuple[Branch, ...]
     cases: tuple[Case, ...]
+
+    @property
+    def not_covered(self) -> tuple[tuple[WrittenComparison, ...], ...]:
+        """The parts of the domain without a solution; the comparisons of one hold together."""
+        domain, field = self.model.domain, self.model.field
+        found = []
+        for branch, exceptional in uncovered(self.branches):
+            equations = [
+                written_comparison(domain, Comparison(e.polynomial, "="))
+                if e.parameter is None or e.value is None
+                else written_equation(field, e.parameter, e.value)
+                for e in branch.equations
+            ]
+            left = [written_comparison(domain, Comparison(p, "=")) for p in exceptional.polynomials]
+            found.append((*equations, *left))
+        return tuple(dict.fromkeys(found))
 
     def __repr__(self) -> str:
         states, cases = len(self.model.states), len(self.cases)
