@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
+from itertools import combinations
 from typing import NamedTuple
 
 from closedform.algebra.domain import Comparison, ParameterDomain
@@ -23,6 +24,9 @@ from closedform.notation.rational import difference
 from closedform.notation.rational_formula import rational_formula
 
 __all__ = ["Requirement", "conditions_of", "domain_of", "relation_holds", "requirements_of"]
+
+MOST_MIXED = 5
+"""Conditions on several parameters that are tried all at once; the work doubles with each."""
 
 
 class Requirement(NamedTuple):
@@ -160,17 +164,19 @@ def _refuse_contradiction(
     field: ParameterField, requirements: Sequence[Requirement], source: Source
 ) -> None:
     for group in _connected(field, requirements):
-        domain = ParameterDomain(field, tuple(r.comparison for r in group))
-        if domain.sample(1, seed=0):  # a point where all hold is found sooner than no reason
-            continue
-        contrary = domain.contradiction()
-        if contrary is None:
-            continue
-        involved = [r for r in group if any(r.comparison is c for c in contrary)]
-        place = source.at(involved[-1].key)
-        if place.line is None:
-            place = source.at_name(involved[-1].key)
-        raise ContradictionError(place, tuple(dict.fromkeys(r.text for r in involved)))
+        if ParameterDomain(field, tuple(r.comparison for r in group)).sample(1, seed=0):
+            continue  # a point where all hold is found sooner than no reason
+        mixed = [r for r in group if len(field.names_in(r.comparison.element)) > 1]
+        parts = [group] if len(mixed) <= MOST_MIXED else combinations(group, 2)
+        for part in parts:
+            contrary = ParameterDomain(field, tuple(r.comparison for r in part)).contradiction()
+            if contrary is None:
+                continue
+            involved = [r for r in part if any(r.comparison is c for c in contrary)]
+            place = source.at(involved[-1].key)
+            if place.line is None:
+                place = source.at_name(involved[-1].key)
+            raise ContradictionError(place, tuple(dict.fromkeys(r.text for r in involved)))
 
 
 def _connected(

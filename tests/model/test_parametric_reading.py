@@ -15,6 +15,7 @@ from closedform.algebra.surds import SurdSum
 from closedform.errors import Place
 from closedform.model import Model, ParametricModel, load, model_from
 from closedform.model.building import system
+from closedform.model.parameter_errors import ContradictionError
 from closedform.model.parametric import Parameter, ParametricOutput, ValueSet
 from closedform.notation.plain import plain
 from closedform.notation.rational import rational_value
@@ -249,3 +250,11 @@ def test_conditions_that_hold_at_a_point_are_no_contradiction(
     )
     assert model.values == ValueSet("", tuple(values.items()))
     assert len(model.domain.conditions) == len(conditions)
+
+
+def test_among_many_conditions_two_that_contradict_each_other_are_found() -> None:
+    parameters = dict.fromkeys(["a", "b", "c"], "real")
+    chain = [f"{k + 1}*a + b - c > {k * k}" for k in range(9)]
+    with pytest.raises(ContradictionError) as caught:
+        stated([["a*b*c"]], parameters=parameters, conditions=[*chain, "9*a + b - c < 60"])
+    assert caught.value.conditions == ("9*a + b - c > 64", "9*a + b - c < 60")
