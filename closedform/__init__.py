@@ -17,13 +17,17 @@ if TYPE_CHECKING:
     from closedform.document.writeup import WriteUp, write_up
     from closedform.model.building import system
     from closedform.model.model import Model
+    from closedform.model.parametric import ParametricModel
     from closedform.model.reading import load
     from closedform.response.response import Response, respond
     from closedform.verification.record import VerificationRecord
     from closedform.verification.verify import verify
 
 __all__ = [
+    "CaseRecords",
     "Model",
+    "ParametricModel",
+    "ParametricResponse",
     "Response",
     "VerificationRecord",
     "WriteUp",
@@ -35,14 +39,18 @@ __all__ = [
 ]
 
 _HOMES = {
+    "CaseRecords": "closedform.verification.parametric.record",
     "Model": "closedform.model.model",
+    "ParametricModel": "closedform.model.parametric",
+    "ParametricResponse": "closedform.response.parametric.response",
+    "ParametricModel": "closedform.model.parametric",
     "Response": "closedform.response.response",
     "VerificationRecord": "closedform.verification.record",
     "WriteUp": "closedform.document.writeup",
     "load": "closedform.model.reading",
-    "respond": "closedform.response.response",
+    "respond": "closedform.response.solving",
     "system": "closedform.model.building",
-    "verify": "closedform.verification.verify",
+    "verify": "closedform.verification.proving",
     "write_up": "closedform.document.writeup",
 }
 
