@@ -163,10 +163,15 @@ class NameHereError(ModelError):
         self.name, self.kind = name, kind
 
     def _paragraph(self) -> str:
-        text = f"'{self.name}' is {self.kind}, and here only parameters may stand"
         if self.kind == "an abbreviation":
-            return f"{text}; write its formula, or move it from [abbreviations] to [substitute]"
-        return f"{text}: the system is linear, and its coefficients are constant"
+            return (
+                f"'{self.name}' is an abbreviation, which is for the results only; write its "
+                "formula, or move it from [abbreviations] to [substitute]"
+            )
+        return (
+            f"'{self.name}' is {self.kind}, and here only parameters may stand: the system is "
+            "linear, and its coefficients are constant"
+        )
 
 
 class ContradictionError(ModelError):

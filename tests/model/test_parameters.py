@@ -121,7 +121,7 @@ BAD: list[tuple[list[Change], type[InputError], str]] = [
     (
         [('"-c/m"', '"2*delta"')],
         wrong.NameHereError,
-        "'delta' is an abbreviation, and here only par",
+        "'delta' is an abbreviation, which is for the",
     ),
     (
         [("c^2 < 4*k*m", "c < delta")],
