@@ -43,7 +43,6 @@ _HOMES = {
     "Model": "closedform.model.model",
     "ParametricModel": "closedform.model.parametric",
     "ParametricResponse": "closedform.response.parametric.response",
-    "ParametricModel": "closedform.model.parametric",
     "Response": "closedform.response.response",
     "VerificationRecord": "closedform.verification.record",
     "WriteUp": "closedform.document.writeup",

@@ -6,12 +6,19 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from closedform.derivation.build import derive
+from closedform.derivation.step import Derivation
 from closedform.document.engine import compile_pdf
 from closedform.document.files import write_whole
-from closedform.document.record import record_text
+from closedform.document.record import DIGITS, record_text
 from closedform.document.render import check_options, check_template, render
 from closedform.model.model import Model
+from closedform.model.parametric import ParametricModel
+from closedform.response.parametric.numbers import NumbersAt, numbers_of
+from closedform.response.parametric.response import ParametricResponse, respond_in_cases
 from closedform.response.response import Response, respond
+from closedform.verification.parametric.numbers import numbers_check
+from closedform.verification.parametric.record import CaseRecords
+from closedform.verification.parametric.verify import verify_cases
 from closedform.verification.record import (
     ResponseRefutedError,
     UnprovedError,
@@ -26,13 +33,13 @@ __all__ = ["WriteUp", "write_up"]
 class WriteUp:
     """What came of one model: its response, what was proved, and the files written."""
 
-    response: Response
-    verification: VerificationRecord
+    response: Response | ParametricResponse
+    verification: VerificationRecord | CaseRecords
     files: tuple[Path, ...]
 
 
 def write_up(
-    model: Model,
+    model: Model | ParametricModel,
     *,
     into: str | Path = "out",
     template: str | Path = "latex",
@@ -50,25 +57,63 @@ def write_up(
              ResponseRefutedError if any identity is refuted, StatementRefutedError if a
              statement of the derivation is, UnprovedError if either is left open (then
              nothing is written);
+             RootsUnknownError, ValuesNotCoveredError for a model with parameters that is
+             not solved for all or some values of them;
              CannotWriteError if a file cannot be written.
     """
     check_options(depth=depth, digits=digits)
     check_template(template)
-    response = respond(model)
-    verification = verify(response)
-    if verification.left_open and not verification.refuted:
-        raise UnprovedError(model.name, verification.left_open)
-    if not verification.holds:
-        raise ResponseRefutedError(model.name, verification.refuted)
-    derivation = derive(response, verification, digits=digits)
-    verification = VerificationRecord(derivation.checks)
-    text = render(derivation, template=template, depth=depth)
+    made = _in_cases(model, digits) if isinstance(model, ParametricModel) else _made(model, digits)
+    text = render(made.derivation, template=template, depth=depth)
     folder = Path(into)
     files = [write_whole(folder / f"{model.name}.tex", text)]
     if record:
         path = folder / f"{model.name}.record.json"
-        files.append(write_whole(path, record_text(response, verification)))
-    return WriteUp(response, verification, tuple(files))
+        content = record_text(made.response, made.verification, made.numbers)
+        files.append(write_whole(path, content))
+    return WriteUp(made.response, made.verification, tuple(files))
+
+
+@dataclass(frozen=True)
+class _Made:
+    """A response that holds, its derivation, and what the record tells in numbers."""
+
+    response: Response | ParametricResponse
+    verification: VerificationRecord | CaseRecords
+    derivation: Derivation
+    numbers: tuple[NumbersAt, ...] = ()
+
+
+def _made(model: Model, digits: int) -> _Made:
+    response = respond(model)
+    verification = verify(response)
+    _refuse(model.name, verification)
+    derivation = derive(response, verification, digits=digits)
+    return _Made(response, VerificationRecord(derivation.checks), derivation)
+
+
+def _in_cases(model: ParametricModel, digits: int) -> _Made:
+    """As `_made`; the values of the model are put in, and held against a numeric solution."""
+    from closedform.derivation.parametric.build import derive_cases
+
+    response = respond_in_cases(model)
+    records = verify_cases(response)
+    numbers = numbers_of(response, digits=digits)
+    if model.values is not None:
+        whole = (*records.whole.checks, numbers_check(response, numbers[0], digits=digits))
+        records = CaseRecords(VerificationRecord(whole), records.cases)
+    _refuse(model.name, records)
+    derivation = derive_cases(response, records, digits=digits, numbers=numbers)
+    records = CaseRecords(VerificationRecord(derivation.checks), records.cases)
+    return _Made(response, records, derivation, numbers_of(response, digits=DIGITS))
+
+
+def _refuse(name: str, verification: VerificationRecord | CaseRecords) -> None:
+    """Raise unless everything holds."""
+    if verification.left_open and not verification.refuted:
+        raise UnprovedError(name, verification.left_open)
+    if not verification.holds:
+        raise ResponseRefutedError(name, verification.refuted)
 
 
 def write_pdf(write_up: WriteUp) -> Path:

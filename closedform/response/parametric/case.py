@@ -15,6 +15,7 @@ from closedform.algebra.regimes import Regime
 from closedform.model.parametric import ParametricModel
 from closedform.notation.expression import Call, Expression, operations
 from closedform.notation.rational_formula import rational_formula
+from closedform.notation.shown import FormulaColumn, FormulaMatrix
 from closedform.response.parametric.closed_form import fronted_matrix
 from closedform.response.parametric.conditions import (
     WrittenComparison,
@@ -80,9 +81,9 @@ class Case:
     quantities: tuple[WrittenQuantity, ...]
     state: ExponentialMatrix
     output: ExponentialMatrix | None
-    solution: tuple[Expression, ...]
-    outputs: tuple[Expression, ...]
-    transition: Rows
+    solution: FormulaColumn
+    outputs: FormulaColumn
+    transition: FormulaMatrix
     fronted: tuple[Expression | None, Rows]
 
     @property
@@ -178,9 +179,9 @@ def written_case(
         tuple(written),
         state,
         output,
-        best.formulas[:n],
-        best.formulas[n : n + m],
-        transition,
+        FormulaColumn(best.formulas[:n]),
+        FormulaColumn(best.formulas[n : n + m]),
+        FormulaMatrix(transition),
         fronted_matrix(writing, rows, transition, model.time),
     )
 

@@ -11,8 +11,11 @@ from closedform.algebra.field import FieldMatrix
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import regimes_of
 from closedform.model.parametric import ParametricModel
+from closedform.notation.latex.formula import formula
 from closedform.notation.plain import plain
-from closedform.response.parametric.case import Case, written_case
+from closedform.notation.rational_formula import rational_formula
+from closedform.notation.shown import FormulaColumn
+from closedform.response.parametric.case import Case, WrittenQuantity, written_case
 from closedform.response.parametric.conditions import (
     WrittenComparison,
     written_comparison,
@@ -20,6 +23,9 @@ from closedform.response.parametric.conditions import (
 )
 
 __all__ = ["ParametricResponse", "respond_in_cases"]
+
+_RELATIONS = {"<": "<", ">": ">", "<=": r"\le", ">=": r"\ge", "!=": r"\neq", "==": "="}
+"""The signs of comparisons as LaTeX."""
 
 
 @dataclass(frozen=True, repr=False)
@@ -64,14 +70,40 @@ class ParametricResponse:
         lines = []
         for case in self.cases:
             lines.append(f"if {case.condition}:" if case.conditions else "always:")
-            for state, formula in zip(self.model.states, case.solution, strict=True):
-                lines.append(f"  {state}({t}) = {plain(formula)}")
-            lines += [
-                f"  {quantity.name} = {plain(quantity.formula)}"
-                for quantity in case.quantities
-                if quantity.formula is not None
-            ]
+            for state, written in zip(self.model.states, case.solution, strict=True):
+                lines.append(f"  {state}({t}) = {plain(written)}")
+            lines += [f"  {self._defined(quantity)}" for quantity in case.quantities]
         return "\n".join(lines)
+
+    def _defined(self, quantity: WrittenQuantity) -> str:
+        if quantity.formula is not None:
+            return f"{quantity.name} = {plain(quantity.formula)}"
+        if quantity.root is None:
+            raise TypeError(f"{quantity.name} has no definition")
+        field = self.model.field
+        texts = [plain(rational_formula(field, c)) for c in quantity.root.polynomial]
+        place = f"root {quantity.root.which}, by real part"
+        return f"{quantity.name} is {place}, of the coefficients {', '.join(texts)}"
+
+    def _repr_latex_(self) -> str:
+        """Return the solution as LaTeX for a notebook, a row for each case."""
+        if not any(case.conditions for case in self.cases):
+            return self.cases[0].solution._repr_latex_()
+        rows = [f"{_bare(case.solution)} & {_condition_latex(case)}" for case in self.cases]
+        body = r" \\[1ex] ".join(rows)
+        return rf"$\displaystyle \left\{{\begin{{array}}{{ll}} {body} \end{{array}}\right.$"
+
+
+def _bare(column: FormulaColumn) -> str:
+    return column._repr_latex_().strip("$")
+
+
+def _condition_latex(case: Case) -> str:
+    parts = [
+        f"{formula(c.left).latex} {_RELATIONS[c.sign]} {formula(c.right).latex}"
+        for c in case.conditions
+    ]
+    return r" \text{ and } ".join(parts)
 
 
 def respond_in_cases(model: ParametricModel) -> ParametricResponse:
