@@ -107,6 +107,7 @@ def test_signs_for_positive_parameters(element: Scalar, sign: str, reason: type)
         ([(A - B, "!=")], (A - B) ** 2, "positive", ByFactors),
         ([(A - B, "=")], A**2 - B**2, "zero", ByFactors),
         ([(A - B, "="), (B, ">")], A + C**2, "positive", ByTerms),
+        ([(A - B, "="), (B, ">")], A**2 * C - B**2 * C + B, "positive", ByExpansion),
         ([(A - B, ">"), (B, ">")], A, "positive", ByCondition),
         ([(A - B, ">"), (B, ">")], A**2 - A * B + 1, "positive", ByCondition),
         ([(A - B, ">"), (B - C, ">"), (C, ">")], A**2 - B * C, "positive", ByExpansion),
