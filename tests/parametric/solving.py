@@ -6,9 +6,11 @@ import json
 from collections.abc import Mapping, Sequence
 from typing import Any
 
-import closedform
 from closedform.document.record import record_text
 from closedform.model.building import model_from
+from closedform.response.parametric.numbers import numbers_of
+from closedform.response.parametric.response import respond_in_cases
+from closedform.verification.parametric.verify import verify_cases
 
 __all__ = ["record_of_mapping", "record_of_model", "stated"]
 
@@ -42,8 +44,16 @@ def record_of_mapping(mapping: Mapping[str, Any]) -> Record:
 
 def record_of_model(model: Any) -> Record:
     """Solve, prove, and return the record.  It is an error if a proof fails."""
-    response = closedform.respond(model)
-    verification = closedform.verify(response)
-    assert verification.holds
-    record: Record = json.loads(record_text(response, verification))
+    response = respond_in_cases(model)
+    records = verify_cases(response)
+    failed = [
+        check
+        for record in (records.whole, *records.cases)
+        for check in record.checks
+        if check.outcome not in ("proved", "enclosed")
+    ]
+    assert not failed
+    assert records.holds
+    numbers = numbers_of(response, digits=12)
+    record: Record = json.loads(record_text(response, records, numbers))
     return record

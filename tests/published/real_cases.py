@@ -19,7 +19,12 @@ REAL_CASES: dict[str, Case] = {
     ]
 }
 NUMERIC = [k for k, c in REAL_CASES.items() if not c["parameters"] and not c.get("refused")]
-WITH_PARAMETERS = [k for k, c in REAL_CASES.items() if c["parameters"] and not c.get("refused")]
+WITH_PARAMETERS = [
+    k
+    for k, c in REAL_CASES.items()
+    if c["parameters"] and not c.get("refused") and not c.get("unknown")
+]
+UNKNOWN = [k for k, c in REAL_CASES.items() if c.get("unknown")]
 REFUSED = [k for k, c in REAL_CASES.items() if c.get("refused")]
 
 
