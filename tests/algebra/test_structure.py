@@ -129,6 +129,22 @@ def test_flow_in_one_direction_around_a_ring_proves_no_real_rates() -> None:
     assert found.stable.along == "columns"
 
 
+def test_a_factor_is_proved_by_its_own_block() -> None:
+    """A ring in one direction feeds a chain that exchanges; only the chain is symmetric."""
+    ring = {(0, 1): "a", (1, 2): "b", (2, 0): "c"}
+    chain = {(3, 4): "f", (4, 3): "g", (4, 5): "h", (5, 4): "i"}
+    domain, matrix = system({**ring, (2, 3): "e", **chain}, {5: "j"})
+    found = {f.places: f.negative for f in factors_of(domain, matrix) if f is not None}
+    assert found == {(0, 1, 2): False, (3, 4, 5): True}
+
+
+def test_a_tree_that_is_neither_path_nor_star_is_not_said_to_be_simple() -> None:
+    rates = {(0, 1): "a", (1, 2): "b", (2, 3): "c", (1, 4): "d"}
+    domain, matrix = system({**rates, **{pair[::-1]: n for pair, n in rates.items()}}, {0: "e"})
+    assert real_spectrum(matrix, domain) is not None
+    assert simple_spectrum(matrix, domain) is None
+
+
 def test_a_closed_system_keeps_a_rate_of_zero() -> None:
     domain, matrix = system({(0, 1): "a", (1, 0): "b", (1, 2): "c", (2, 1): "d"}, {})
     (found,) = factors_of(domain, matrix)
