@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 
@@ -22,13 +23,28 @@ from closedform.notation.expression import (
     number,
     product,
 )
-from closedform.notation.terms import negated, sum_of
+from closedform.notation.terms import negated, opened, sum_of
 from closedform.response.parametric.known import Known
 
 __all__ = ["InNumbers", "decimal_formula", "in_numbers"]
 
-Part = tuple[Expression, Expression | None]
-"""A weight without the time, and the function that it stands before, if any."""
+
+@dataclass(frozen=True)
+class _Part:
+    """A weight without the time, and the functions of the time that it stands before."""
+
+    weight: Expression
+    functions: tuple[_Function, ...] = ()
+
+
+@dataclass(frozen=True)
+class _Terms:
+    """A sum as one of several functions; a weight before it goes to each of its terms."""
+
+    parts: tuple[_Part, ...]
+
+
+_Function = Expression | _Terms
 
 
 @dataclass(frozen=True)
@@ -51,7 +67,7 @@ def in_numbers(formula: Expression, known: Known, time: str, digits: int) -> InN
     Raises UnsettledError for a number that is 0 without this being known exactly.
     """
     writer = _Writer(known, time, digits)
-    written = writer.written(*writer.parted(formula))
+    written = writer.written(writer.parted(formula))
     return InNumbers(written, writer.rounded)
 
 
@@ -73,63 +89,77 @@ class _Writer:
         self.known, self.time, self.digits = known, time, digits
         self.rounded = False
 
-    def parted(self, formula: Expression) -> Part:
-        """Return (weight, function) with formula = weight · function, or weight alone.
+    def parted(self, formula: Expression) -> _Part:
+        """Return weight and functions whose product is the formula.
 
         The weight is a formula without the time that is not worked out yet.
         """
         if self.time not in names_in(formula):
-            return formula, None
+            return _Part(formula)
         match formula:
             case Negation(operand):
-                weight, function = self.parted(operand)
-                return negated(weight), function
+                part = self.parted(operand)
+                return _Part(negated(part.weight), part.functions)
             case Product(factors):
                 parts = [self.parted(factor) for factor in factors]
-                functions = [function for _, function in parts if function is not None]
+                functions = [function for part in parts for function in part.functions]
                 functions.sort(key=lambda f: not isinstance(f, Name | Power))  # t e^(-t)
-                whole = product(functions) if functions else None
-                return product(weight for weight, _ in parts), whole
+                return _Part(product(part.weight for part in parts), tuple(functions))
             case Quotient(above, below):
                 return self._quotient(self.parted(above), self.parted(below))
             case Power(base, exponent):
-                weight, function = self.parted(base)
-                raised = None if function is None else Power(function, exponent)
-                return Power(weight, exponent), raised
+                part = self.parted(base)
+                inside = self.written(_Part(ONE, part.functions))
+                raised = (Power(inside, exponent),) if part.functions else ()
+                return _Part(Power(part.weight, exponent), raised)
             case Call(name, argument):
-                inside = self.written(*self.parted(argument))
+                inside = self.written(self.parted(argument))
                 if inside == ZERO:
-                    return (ONE if name in ("exp", "cos", "cosh") else ZERO), None
-                return ONE, Call(name, inside)
+                    return _Part(ONE if name in ("exp", "cos", "cosh") else ZERO)
+                return _Part(ONE, (Call(name, inside),))
             case Sum(terms):
                 return self._sum([self.parted(term) for term in terms])
-        return ONE, formula
+        return _Part(ONE, (formula,))
 
-    def _quotient(self, above: Part, below: Part) -> Part:
-        weight = Quotient(above[0], below[0])
-        if below[1] is None:
-            return weight, above[1]
-        return weight, Quotient(ONE if above[1] is None else above[1], below[1])
+    def _quotient(self, above: _Part, below: _Part) -> _Part:
+        weight = Quotient(above.weight, below.weight)
+        if not below.functions:
+            return _Part(weight, above.functions)
+        sides = (self.written(_Part(ONE, part.functions)) for part in (above, below))
+        return _Part(weight, (Quotient(*sides),))
 
-    def _sum(self, parts: list[Part]) -> Part:
-        """Add up the constants, then the weights of one function; leave out what is zero."""
-        weights: dict[Expression | None, list[Expression]] = {}
-        for weight, function in parts:
-            weights.setdefault(function, []).append(weight)
+    def _sum(self, parts: Sequence[_Part]) -> _Part:
+        """Add up the weights of one function; leave out what is zero."""
+        weights: dict[tuple[_Function, ...], list[Expression]] = {}
+        for part in parts:
+            weights.setdefault(part.functions, []).append(part.weight)
         standing = []
-        for function, several in weights.items():
+        for functions, several in weights.items():
             total = several[0] if len(several) == 1 else Sum(tuple(several))
             value = self.known.value(total)
             if value is None or not value.is_zero:
-                standing.append((total, function))
+                standing.append(_Part(total, functions))
         if not standing:
-            return ZERO, None
-        if len(standing) == 1:
-            return standing[0]
-        return ONE, sum_of([self.written(*part) for part in standing])
+            return _Part(ZERO)
+        return standing[0] if len(standing) == 1 else _Part(ONE, (_Terms(tuple(standing)),))
 
-    def written(self, weight: Expression, function: Expression | None) -> Expression:
-        """Return weight · function with the weight as one number."""
+    def written(self, part: _Part) -> Expression:
+        """Return a part with one number in each of its terms."""
+        sums = [f for f in part.functions if isinstance(f, _Terms)]
+        plain_ones = [f for f in part.functions if not isinstance(f, _Terms)]
+        if not sums:
+            return self._weighted(part.weight, product(plain_ones) if plain_ones else None)
+        first, *others = sums
+        terms = [_Part(product([part.weight, t.weight]), t.functions) for t in first.parts]
+        total = sum_of([self.written(term) for term in terms])
+        if total == ZERO:
+            return ZERO
+        size = total.operand if isinstance(total, Negation) else total
+        rest = [self.written(_Part(ONE, (other,))) for other in others]
+        whole = product([*plain_ones, size, *rest])
+        return opened(Negation(whole)) if isinstance(total, Negation) else whole
+
+    def _weighted(self, weight: Expression, function: Expression | None) -> Expression:
         value = self._number(weight)
         if function is None or value == ZERO:
             return value

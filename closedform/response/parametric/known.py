@@ -30,7 +30,7 @@ from closedform.response.parametric.case import Case
 from closedform.response.parametric.quantities import RootDefinition
 from closedform.response.sampling import surd_decimal
 
-__all__ = ["Known", "Root", "known_at", "polynomial_at"]
+__all__ = ["Known", "Root", "known_at"]
 
 _MOST_TERMS = 16
 """Square roots in an exact value; beyond, a number is known by its balls alone."""
@@ -224,14 +224,7 @@ def _root_at(
 ) -> Root:
     if root is None:
         raise TypeError("a quantity without a formula is a root")
-    base, polynomial = polynomial_at(field, root.polynomial, values)
-    return Root(base, polynomial, root.which)
-
-
-def polynomial_at(
-    field: ParameterField, coefficients: tuple[object, ...], values: Mapping[str, SurdSum]
-) -> tuple[BaseField, Polynomial]:
-    """Return a polynomial over `field` at values, over the field that these need."""
-    numbers = [field.exact_at(c, values) for c in coefficients]
+    numbers = [field.exact_at(c, values) for c in root.polynomial]
     base = base_field(numbers)
-    return base, base.polynomial([base.scalar(number) for number in numbers])
+    polynomial = base.polynomial([base.scalar(number) for number in numbers])
+    return Root(base, polynomial, root.which)

@@ -8,17 +8,13 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from fractions import Fraction
-from math import factorial
 
-from flint import acb, arb
+from flint import arb
 
 from closedform.algebra.domain import Comparison
 from closedform.algebra.enclosure import ball_of, certified_decimals
-from closedform.algebra.exponential import ExponentialMatrix, ModalTerm
-from closedform.algebra.field import Scalar, base_field
+from closedform.algebra.field import base_field
 from closedform.algebra.parameter_field import ParameterField
-from closedform.algebra.roots import root_set
 from closedform.algebra.sign_argument import relation_values
 from closedform.algebra.surds import SurdSum
 from closedform.errors import InputError
@@ -28,8 +24,9 @@ from closedform.notation.expression import Name
 from closedform.notation.plain import plain
 from closedform.notation.terms import surd_formula
 from closedform.response.parametric.case import Case
+from closedform.response.parametric.exact_at import FunctionsAt, functions_at
 from closedform.response.parametric.in_numbers import InNumbers, in_numbers
-from closedform.response.parametric.known import Known, known_at, polynomial_at
+from closedform.response.parametric.known import Known, known_at
 from closedform.response.parametric.response import ParametricResponse
 from closedform.response.sampling import suitable_times, surd_decimal
 
@@ -115,7 +112,9 @@ def numbers_at(
     values = dict(given.values)
     case = case_at(response, given)
     known = known_at(field, case, values)
-    instants = tuple(times) or suitable_times(lambda: _roots(field, case, values))
+    columns = (case.state, *(() if case.output is None else (case.output,)))
+    functions = functions_at(field, columns, values)
+    instants = tuple(times) or suitable_times(functions.roots)
     return NumbersAt(
         given.label,
         tuple((name, values[name]) for name in field.parameters),
@@ -127,7 +126,7 @@ def numbers_at(
         tuple(in_numbers(formula, known, model.time, digits) for formula in case.solution),
         tuple(in_numbers(formula, known, model.time, digits) for formula in case.outputs),
         instants,
-        tuple(_row(response, case, known, t, digits) for t in instants),
+        tuple(_row(response, case, known, functions, t, digits) for t in instants),
     )
 
 
@@ -154,83 +153,22 @@ def _holds(field: ParameterField, comparison: Comparison, values: Mapping[str, S
     return numbers.sign(numbers.scalar(value)) in relation_values(comparison.relation)
 
 
-def _roots(field: ParameterField, case: Case, values: Mapping[str, SurdSum]) -> list[acb]:
-    """Balls around all eigenvalues; one that is 0 is exactly that."""
-    found: list[acb] = []
-    for factor in case.branch.spectrum.factors:
-        base, p = polynomial_at(field, factor.polynomial, values)
-        for part, _ in p.factor_list()[1]:
-            found += root_set(base, part.monic()).enclosures()
-    return found
-
-
 def _row(
-    response: ParametricResponse, case: Case, known: Known, t: SurdSum, digits: int
+    response: ParametricResponse,
+    case: Case,
+    known: Known,
+    functions: FunctionsAt,
+    t: SurdSum,
+    digits: int,
 ) -> tuple[str, ...]:
     """The states and outputs at one instant, those that are algebraic numbers exactly."""
-    field, time, values = response.model.field, response.model.time, known.exact
     formulas = (*case.solution, *case.outputs)
-    exact = [_exact_entry(field, case.state, k, t, values) for k in range(len(case.solution))]
-    if case.output is not None:
-        exact += [_exact_entry(field, case.output, k, t, values) for k in range(len(case.outputs))]
+    exact = [functions.exact(place, t) for place in range(len(formulas))]
 
     def balls() -> list[arb]:
-        at = {**known.balls(), time: ball_of(t)}
+        at = {**known.balls(), response.model.time: ball_of(t)}
         pairs = zip(formulas, exact, strict=True)
         return [enclose(formula, at) for formula, value in pairs if value is None]
 
     decimals = iter(certified_decimals(balls, digits))
     return tuple(next(decimals) if e is None else surd_decimal(e, digits) for e in exact)
-
-
-def _exact_entry(
-    field: ParameterField,
-    function: ExponentialMatrix,
-    row: int,
-    t: SurdSum,
-    values: Mapping[str, SurdSum],
-) -> SurdSum | None:
-    """An entry of a column of functions at t as a surd sum, or None if it is transcendental.
-
-    As `ExponentialMatrix.exact_entry` says; only that a factor may have the root 0 beside
-    others here, as it need not be irreducible at single values.
-    """
-    total = SurdSum(())
-    for term in function.terms:
-        held = _coefficients(field, term, row, t, values)
-        if t.is_zero:
-            total += held[-1]  # Euler's formula
-            continue
-        if all(c.is_zero for c in held):
-            continue
-        rest = _without_root_zero(field, term, values)
-        # the coefficient of a root other than 0 vanishes only with held = c p(x)/x
-        if rest is None or any(
-            not (c - held[-1] * r).is_zero for c, r in zip(held, rest, strict=True)
-        ):
-            return None
-        total += held[-1]
-    return total
-
-
-def _coefficients(
-    field: ParameterField, term: ModalTerm, row: int, t: SurdSum, values: Mapping[str, SurdSum]
-) -> list[SurdSum]:
-    """The sum of R_j t^j/j! as a polynomial in lambda, lowest power first."""
-    found = []
-    for power in range(term.factor.degree):
-        total = SurdSum(())
-        for j, residue in enumerate(term.residues):
-            element: Scalar = residue.entry(row, 0).nth(power)
-            weight = t.power(j) * SurdSum.rational(Fraction(1, factorial(j)))
-            total += field.exact_at(element, values) * weight
-        found.append(total)
-    return found
-
-
-def _without_root_zero(
-    field: ParameterField, term: ModalTerm, values: Mapping[str, SurdSum]
-) -> list[SurdSum] | None:
-    """p(x)/x for a factor p with the root 0 at the values, lowest power first; else None."""
-    last, *rest = (field.exact_at(c, values) for c in reversed(term.factor.polynomial))
-    return rest if last.is_zero else None

@@ -15,12 +15,13 @@ from closedform.notation.latex.formula import formula
 from closedform.notation.plain import plain
 from closedform.notation.rational_formula import rational_formula
 from closedform.notation.shown import FormulaColumn
-from closedform.response.parametric.case import Case, WrittenQuantity, written_case
+from closedform.response.parametric.case import Case, WrittenQuantity
 from closedform.response.parametric.conditions import (
     WrittenComparison,
     written_comparison,
     written_equation,
 )
+from closedform.response.parametric.writing import written_case
 
 __all__ = ["ParametricResponse", "respond_in_cases"]
 
@@ -129,8 +130,11 @@ def respond_in_cases(model: ParametricModel) -> ParametricResponse:
             regimes_of(field, factor, structure, branch.domain)
             for factor, structure in zip(branch.spectrum.factors, branch.structures, strict=True)
         ]
+        first: Case | None = None
         for regimes in product(*ways):
-            cases.append(written_case(model, branch, regimes, state, output, len(cases)))
+            case = written_case(model, branch, regimes, (state, output), len(cases), first)
+            first = first or case
+            cases.append(case)
     return ParametricResponse(model, domain, matrix, initial, branches, tuple(cases))
 
 
