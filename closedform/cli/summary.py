@@ -13,6 +13,7 @@ from flint import arb
 from closedform.algebra.enclosure import certified_decimal
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
+from closedform.cli.cases import all_checks, case_lines, parameters_line, uncovered_lines
 from closedform.cli.screen import Line
 from closedform.document.writeup import WriteUp
 from closedform.notation.expression import Expression, Name, Negation, Number, Quotient, Sum
@@ -20,6 +21,7 @@ from closedform.notation.plain import plain
 from closedform.notation.terms import surd_formula
 from closedform.response.modes import Mode
 from closedform.response.names import Radical, RootPart
+from closedform.response.parametric.response import ParametricResponse
 from closedform.response.response import ClosedForms, Response
 from closedform.response.sampling import constant_decimal, surd_decimal
 from closedform.verification.record import VerificationRecord
@@ -37,21 +39,38 @@ def summary(result: WriteUp, files: Sequence[Path], *, digits: int, width: int) 
 
     No line is longer than `width`, except that a path is never broken.
     """
-    response = result.response
     lines: list[Line] = [
-        ((title, "bold"),) for title in textwrap.wrap(response.model.title, width) or [""]
+        ((title, "bold"),) for title in textwrap.wrap(result.response.model.title, width) or [""]
     ]
     entries = [
-        ("states", _wrapped(_states(response.model.states), width)),
-        ("eigenvalues", eigenvalues(response, min(digits, MOST_DIGITS), width - LABEL)),
-        ("form", [line for text in form(response) for line in _wrapped(text, width)]),
-        *[(label, _wrapped(text, width)) for label, text in proofs(result.verification)],
+        ("states", _wrapped(_states(result.response.model.states), width)),
+        *_found(result, digits, width),
         ("written", [str(file) for file in files]),
     ]
     for label, texts in entries:
         for k, text in enumerate(texts):
             lines.append(((f"  {'' if k else label:{LABEL - 2}}", "dim"), (text, "")))
     return [*lines, ()]
+
+
+def _found(result: WriteUp, digits: int, width: int) -> list[tuple[str, list[str]]]:
+    """Return labelled lines: what was found, and what was proved of it."""
+    response, record = result.response, result.verification
+    if isinstance(response, ParametricResponse):
+        found = [
+            ("parameters", [parameters_line(response)]),
+            ("cases", case_lines(response)),
+            ("not covered", uncovered_lines(response)),
+        ]
+    else:
+        rows = eigenvalues(response, min(digits, MOST_DIGITS), width - LABEL)
+        found = [("eigenvalues", rows), ("form", form(response))]
+    checks = record if isinstance(record, VerificationRecord) else all_checks(record)
+    found += [(label, [text]) for label, text in proofs(checks)]
+    return [
+        (label, texts if label == "eigenvalues" else [w for t in texts for w in _wrapped(t, width)])
+        for label, texts in found
+    ]
 
 
 def eigenvalues(response: Response, digits: int, width: int) -> list[str]:
