@@ -6,11 +6,10 @@ import json
 from collections.abc import Mapping, Sequence
 from typing import Any
 
+import closedform
 from closedform.document.record import record_text
 from closedform.model.building import model_from
 from closedform.response.parametric.numbers import numbers_of
-from closedform.response.parametric.response import respond_in_cases
-from closedform.verification.parametric.verify import verify_cases
 
 __all__ = ["record_of_mapping", "record_of_model", "stated"]
 
@@ -44,8 +43,8 @@ def record_of_mapping(mapping: Mapping[str, Any]) -> Record:
 
 def record_of_model(model: Any) -> Record:
     """Solve, prove, and return the record.  It is an error if a proof fails."""
-    response = respond_in_cases(model)
-    records = verify_cases(response)
+    response = closedform.respond(model)
+    records = closedform.verify(response)
     failed = [
         check
         for record in (records.whole, *records.cases)
