@@ -18,7 +18,7 @@ from closedform.document.symbols import ANY_ROW, side_box
 from closedform.notation.expression import Expression, Product
 from closedform.notation.latex.box import EM_PER_LINE, RELATION, Box
 
-__all__ = ["Display", "displayed", "displayed_together", "fits"]
+__all__ = ["RELATIONS", "Display", "displayed", "displayed_together", "fits"]
 
 WIDEST_LEFT_SIDE = 12.0
 """A left side up to this width, in em, keeps the lines below it indented past it."""
@@ -39,7 +39,16 @@ MARK = "\t"
 APART = "\v"
 """Ends a row after which something new begins, with a little more space."""
 
-RELATIONS = {"=": "=", "~": r"\sim", "!=": r"\neq", "<": "<", ">": ">", "in": r"\in"}
+RELATIONS = {
+    "=": "=",
+    "~": r"\sim",
+    "!=": r"\neq",
+    "<": "<",
+    ">": ">",
+    "<=": r"\leq",
+    ">=": r"\geq",
+    "in": r"\in",
+}
 
 
 @dataclass(frozen=True, slots=True)

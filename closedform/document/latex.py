@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 
 from closedform.derivation.step import Side, Statement
-from closedform.document.display import Display, displayed, fits
+from closedform.document.display import RELATIONS, Display, displayed, fits
 from closedform.document.symbols import side_box
 from closedform.notation.latex.escape import escaped
 from closedform.notation.latex.names import name_box
@@ -51,7 +51,7 @@ def inline(item: Side | Statement | str) -> str:
     if isinstance(item, str):
         return f"${name_latex(item)}$"
     if isinstance(item, Statement):
-        return "$" + f" {item.relation} ".join(map(side_latex, item.sides)) + "$"
+        return "$" + f" {RELATIONS[item.relation]} ".join(map(side_latex, item.sides)) + "$"
     return f"${side_latex(item)}$"
 
 
@@ -66,8 +66,15 @@ def cell(item: Side | Statement | str, *, display: bool = False) -> str:
 
 
 def mixed(items: str | list[Side | Statement | str]) -> str:
-    """Return a sentence: a text, or a list of texts and mathematics with spaces between."""
-    return " ".join(map(cell, [items] if isinstance(items, str) else items))
+    """Return a sentence: a text, or a list of texts and mathematics with spaces between.
+
+    Before a text that begins with a comma, a semicolon or a colon there is none.
+    """
+    sentence = ""
+    for item in [items] if isinstance(items, str) else items:
+        close = not sentence or (isinstance(item, str) and item.startswith((",", ";", ":")))
+        sentence += cell(item) if close else f" {cell(item)}"
+    return sentence
 
 
 def decimal(text: str) -> str:

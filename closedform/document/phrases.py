@@ -73,6 +73,11 @@ def listed(items: Iterable[str]) -> str:
     return words[0] if len(words) == 1 else f"{', '.join(words[:-1])} and {words[-1]}"
 
 
+def add_one(value: int) -> int:
+    """Return the next whole number: what is counted from 0 is printed counted from 1."""
+    return value + 1
+
+
 def field(text: str) -> str:
     r"""Return a field of numbers as mathematics: Q(sqrt(2)) is \mathbb{Q}(\sqrt{2})."""
     if FIELD.fullmatch(text) is None:
@@ -98,6 +103,7 @@ FILTERS: dict[str, Callable[..., Any]] = {
     "said": said,
     "field": field,
     "listed": listed,
+    "add_one": add_one,
 }
 
 FUNCTIONS: dict[str, Callable[..., Any]] = {

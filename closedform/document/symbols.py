@@ -20,6 +20,8 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
                                [lambda], or parts: one side
     determinant                letter [A] argument [lambda]        det(lambda I - A)
     resolvent                  letter [A] argument [s]             (s I - A)^(-1)
+    adjugate                   letter [A] argument [s]             adj(s I - A)
+    residue sum                letter [N] argument [t]             sum of N(l) e^(l t)/p'(l)
     shifted                    letter [A] argument, order (power)  A - lambda_1 I,  (A + 2I)^2
     entry                      parts: one side; indices            (e^(At))_12
     pair                       parts: real part a, frequency w     a +- i w
@@ -177,6 +179,20 @@ def _resolvent(symbol: Symbol) -> Box:
     return _raised(_difference(symbol, "s"), "-1", 1.1)
 
 
+def _adjugate(symbol: Symbol) -> Box:
+    return joined(plain(r"\operatorname{adj}", 1.6), _difference(symbol, "s"))
+
+
+def _residue_sum(symbol: Symbol) -> Box:
+    t = formula(symbol.argument or Name("t"), Style.SCRIPT)
+    above = joined(_bold(symbol, "N"), plain(r"(\lambda)", 1.4))
+    latex = (
+        rf"\sum_{{p(\lambda) = 0}} \frac{{{above.latex}}}{{p'(\lambda)}}\,"
+        rf"\mathrm{{e}}^{{\lambda {t.latex}}}"
+    )
+    return Box(latex, 3.0 + above.width + 1.2 + t.width, 3)
+
+
 def _shifted(symbol: Symbol) -> Box:
     box = _bold(symbol, "A")
     if symbol.argument is None:
@@ -265,6 +281,8 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "characteristic polynomial": _polynomial,
     "determinant": _determinant,
     "resolvent": _resolvent,
+    "adjugate": _adjugate,
+    "residue sum": _residue_sum,
     "shifted": _shifted,
     "entry": _entry,
     "pair": _pair,

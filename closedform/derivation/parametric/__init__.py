@@ -1,0 +1,1 @@
+"""The derivation of a model with parameters, case by case."""

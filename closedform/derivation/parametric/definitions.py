@@ -1,0 +1,132 @@
+"""The names in the results: each defined once, with the cases in which it is used."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from closedform.derivation.formulas import LAMBDA, ZERO
+from closedform.derivation.parametric.formulas import polynomial_formula
+from closedform.derivation.step import Statement
+from closedform.notation.expression import Expression, Name
+from closedform.response.parametric.case import Case, WrittenQuantity
+from closedform.response.parametric.response import ParametricResponse
+
+__all__ = ["Definitions", "definitions_of"]
+
+
+@dataclass(frozen=True)
+class _Key:
+    name: str
+    what: object
+
+
+@dataclass(frozen=True)
+class Definitions:
+    """What a step defines: rows of formulas and of roots, in the order of definition.
+
+    A row of `formulas` is {statement, cases, words}; one of `roots` is {statement, names,
+    places, turned, cases}: the names are zeros of the polynomial at these places, counted
+    from the smallest, or their opposites where `turned`.
+    """
+
+    formulas: list[dict[str, object]]
+    roots: list[dict[str, object]]
+
+
+WORDS = {
+    "delta": "decay rate",
+    "omega_d": "damped angular frequency",
+    "omega_n": "natural angular frequency",
+    "tau": "time constant",
+}
+
+
+def definitions_of(
+    response: ParametricResponse, cases: Sequence[Case], told: set[object]
+) -> Definitions:
+    """Return the definitions that these cases need and that are not in `told`; add them to it."""
+    model = response.model
+    own = {d.name for d in model.abbreviations}
+    formulas: list[dict[str, object]] = []
+    for case in cases:
+        for quantity in case.quantities:
+            if quantity.formula is None or (quantity.name in own and quantity.origin == "user"):
+                continue
+            key = _Key(quantity.name, quantity.formula)
+            if key in told:
+                continue
+            told.add(key)
+            statement = Statement("definition", (Name(quantity.name), quantity.formula))
+            formulas.append(
+                {
+                    "name": Name(quantity.name),
+                    "statement": statement,
+                    "cases": _holding(response, quantity),
+                    "words": _words(quantity),
+                }
+            )
+    return Definitions(formulas, [row for case in cases for row in _roots(response, case, told)])
+
+
+def _words(quantity: WrittenQuantity) -> str:
+    stem, _, index = quantity.name.rpartition("_")
+    known = WORDS.get(quantity.name) or (WORDS.get(stem) if index.isdigit() else None)
+    return known or ""
+
+
+def _holding(response: ParametricResponse, quantity: WrittenQuantity) -> tuple[int, ...]:
+    """The cases in which a name means the same."""
+
+    def same(other: WrittenQuantity) -> bool:
+        return (other.name, other.formula, other.root) == (
+            quantity.name,
+            quantity.formula,
+            quantity.root,
+        )
+
+    return tuple(c.number for c in response.cases if any(map(same, c.quantities)))
+
+
+def _roots(response: ParametricResponse, case: Case, told: set[object]) -> list[dict[str, object]]:
+    """One row for each factor that has named roots."""
+    field = response.model.field
+    rows: list[dict[str, object]] = []
+    for mode in case.modes:
+        named = [q for q in case.quantities if q.name in mode.names and q.root is not None]
+        fresh = [q for q in named if _Key(q.name, q.root) not in told]
+        if not fresh:
+            continue
+        told.update(_Key(q.name, q.root) for q in fresh)
+        turned = mode.regime.kind == "decaying"
+        roots = [q.root for q in fresh if q.root is not None]
+        degree = len(roots[0].polynomial) - 1
+        places = [degree + 1 - r.which if turned else r.which for r in roots]
+        polynomial = mode.factor.polynomial if turned else roots[0].polynomial
+        variable = LAMBDA if mode.regime.kind != "squares" else Name("w")
+        written = polynomial_formula(field, polynomial, variable)
+        rows.append(
+            {
+                "statement": Statement("named zeros", (written, ZERO)),
+                "names": [Name(q.name) for q in fresh],
+                "places": places,
+                "turned": turned,
+                "order": _order(mode.regime.kind, fresh),
+                "kind": mode.regime.kind,
+                "cases": _holding(response, fresh[0]),
+                "degree": degree,
+            }
+        )
+    return rows
+
+
+def _order(kind: str, named: Sequence[WrittenQuantity]) -> Statement | None:
+    names: list[Expression] = [Name(q.name) for q in named]
+    match kind:
+        case "decaying":
+            return Statement("sign", (*names, ZERO), ">")
+        case "real roots" if len(names) > 1:
+            return Statement("sign", tuple(names), ">")
+        case "squares":
+            return Statement("sign", (*reversed(names), ZERO), ">")
+    return None

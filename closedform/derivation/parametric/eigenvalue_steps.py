@@ -1,0 +1,185 @@
+"""The steps that give the eigenvalues of the generic branch and the names in the results."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from closedform.algebra.factor_structure import FactorStructure
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.spectrum import Factor
+from closedform.derivation.formulas import LAMBDA, eigenvalue_symbol
+from closedform.derivation.parametric.definitions import Definitions
+from closedform.derivation.parametric.formulas import named_or_written, polynomial_formula
+from closedform.derivation.parametric.reasons import reason_of
+from closedform.derivation.parametric.spectrum import values_of
+from closedform.derivation.parametric.structure_steps import structure_facts
+from closedform.derivation.step import Side, Statement, Step, Symbol
+from closedform.notation.expression import (
+    ZERO,
+    Call,
+    Expression,
+    Name,
+    Sum,
+    power_of,
+    product,
+)
+from closedform.notation.rational_formula import rational_formula
+from closedform.notation.terms import negated, sum_of
+from closedform.response.parametric.case import Case
+from closedform.response.parametric.quantities import Letters
+from closedform.response.parametric.response import ParametricResponse
+
+__all__ = ["definitions_step", "eigenvalues_step"]
+
+
+def eigenvalues_step(response: ParametricResponse, letters: Letters) -> Step:
+    """Give the eigenvalues of the generic branch, factor by factor, and why they lie so."""
+    branch = response.branches[0]
+    cases = [c for c in response.cases if c.branch.number == 0]
+    pairs = [f for f in branch.spectrum.factors if f.degree == 2]
+    rows, first = [], 1
+    for place, (factor, structure) in enumerate(
+        zip(branch.spectrum.factors, branch.structures, strict=True)
+    ):
+        numbers = range(first, first + factor.degree)
+        first += factor.degree
+        number = None if len(pairs) < 2 or factor not in pairs else pairs.index(factor) + 1
+        rows.append(_row(response, cases, place, numbers, structure, (letters, number)))
+    facts = {
+        "rows": rows,
+        "cases": tuple(c.number for c in cases),
+        "several": len(response.branches) > 1,
+        "distinct": all(f.multiplicity == 1 for f in branch.spectrum.factors),
+    }
+    return Step("factors", (), facts, ("characteristic_polynomial",))
+
+
+def _row(
+    response: ParametricResponse,
+    cases: Sequence[Case],
+    place: int,
+    numbers: range,
+    structure: FactorStructure | None,
+    naming: tuple[Letters, int | None],
+) -> dict[str, object]:
+    field = response.model.field
+    factor = cases[0].branch.spectrum.factors[place]
+    kinds = list(dict.fromkeys(c.regimes[place].kind for c in cases))
+    row: dict[str, object] = {
+        "degree": factor.degree,
+        "multiplicity": factor.multiplicity,
+        "index": factor.index,
+        "kinds": kinds,
+        "structure": None,
+        "statements": (),
+    }
+    if factor.degree == 1:
+        value = rational_formula(field, factor.roots.centre)
+        row["statements"] = (Statement("eigenvalue", (eigenvalue_symbol(numbers), value)),)
+    elif factor.degree == 2:
+        row |= _quadratic(field, cases, place, numbers, naming)
+    else:
+        polynomial = polynomial_formula(field, factor.polynomial, LAMBDA)
+        row["polynomial"] = Statement("factor", (polynomial, ZERO))
+        if structure is not None:
+            row["structure"] = structure_facts(field, structure, len(response.model.states))
+        row |= _roots(field, cases, factor, place, numbers)
+    return row
+
+
+def _quadratic(
+    field: ParameterField,
+    cases: Sequence[Case],
+    place: int,
+    numbers: range,
+    naming: tuple[Letters, int | None],
+) -> dict[str, object]:
+    factor, case = cases[0].branch.spectrum.factors[place], cases[0]
+    mode = case.modes[place]
+    discriminant = factor.roots.discriminant
+    argument = case.branch.domain.sign_of(discriminant)
+    symbol = eigenvalue_symbol(numbers)
+    if mode.regime.kind == "decaying":
+        total, last = (rational_formula(field, factor.p.nth(k)) for k in (1, 0))
+        names = [Name(name) for name in mode.names]
+        return {
+            "statements": (
+                Statement("sum of roots", (sum_of(names), total)),
+                Statement("product of roots", (product(names), last)),
+            ),
+            "order": Statement("sign", (*names, ZERO), ">"),
+            "names": names,
+            "why": reason_of(field, argument),
+            "fully": reason_of(field, argument, deep=True),
+            "numbers": symbol,
+        }
+    letters, number = naming
+    name = Name(letters.take("D", number))
+    centre = rational_formula(field, factor.roots.centre)
+    root: Side = Symbol("real pair", parts=(centre, Call("sqrt", name)))
+    row: dict[str, object] = {
+        "statements": (
+            Statement("eigenvalue", (symbol, root)),
+            Statement("definition", (name, rational_formula(field, discriminant))),
+        ),
+        "name": name,
+        "regimes": [
+            {
+                "number": c.number + 1,
+                "sign": Statement("sign", (name, ZERO), _RELATIONS[c.regimes[place].kind]),
+                "cases": (c.number,),
+                "value": Statement(
+                    "eigenvalue", (symbol, next(values_of(field, c, c.modes[place])))
+                ),
+            }
+            for c in cases
+        ],
+    }
+    row["why"] = reason_of(field, argument) if argument.sign != "unknown" else []
+    row["fully"] = reason_of(field, argument, deep=True) if argument.sign != "unknown" else []
+    return row
+
+
+_RELATIONS = {"circular": "<", "double": "=", "hyperbolic": ">"}
+
+
+def _roots(
+    field: ParameterField, cases: Sequence[Case], factor: Factor, place: int, numbers: range
+) -> dict[str, object]:
+    """Where the roots of a factor of higher degree lie, in each of the cases."""
+    regimes = [
+        {
+            "number": c.number + 1,
+            "cases": (c.number,),
+            "values": [
+                Statement("zero", (value,)) for value in values_of(field, c, c.modes[place])
+            ],
+        }
+        for c in cases
+    ]
+    found: dict[str, object] = {"numbers": eigenvalue_symbol(numbers), "regimes": regimes}
+    squares = factor.roots.squares
+    if factor.roots.form == "even" and squares is not None:
+        mu = Name("mu")
+        centre = named_or_written(field, cases[0], factor.roots.centre)
+        base: Expression = LAMBDA if centre == ZERO else Sum((LAMBDA, negated(centre)))
+        found["substitution"] = Statement("substitution", (mu, power_of(base, 2)))
+        found["squares"] = Statement(
+            "polynomial in the square", (polynomial_formula(field, squares.to_list(), mu), ZERO)
+        )
+    return found
+
+
+def definitions_step(
+    response: ParametricResponse, definitions: Definitions, *, branch: int
+) -> Step | None:
+    """Define the names in the results; None if there is nothing to define."""
+    if not definitions.formulas and not definitions.roots:
+        return None
+    facts = {
+        "formulas": definitions.formulas,
+        "roots": definitions.roots,
+        "all": len(response.cases),
+        "branch": branch,
+    }
+    return Step("definitions", (), facts, depth="summary")

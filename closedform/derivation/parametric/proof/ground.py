@@ -1,0 +1,252 @@
+"""What printed statements are held against: one case at one of its points.
+
+Names are taken from their definitions as they are printed; A and x0 from the model's own
+elements; e^(At) from the Taylor series of acb_mat.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, replace
+from functools import cached_property
+from typing import Any
+
+from flint import acb, acb_mat, acb_poly, arb, arb_mat, ctx
+
+from closedform.algebra.enclosure import ball_of
+from closedform.algebra.field import Scalar
+from closedform.derivation.proof.evaluation import ball_at, matrix_at
+from closedform.derivation.proof.finding import Comparison, Finding
+from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
+from closedform.notation.expression import (
+    Expression,
+    Name,
+    Negation,
+    Number,
+    Power,
+    Product,
+    Quotient,
+    Sum,
+    is_expression,
+    names_in,
+)
+from closedform.response.parametric.case import Case
+from closedform.response.parametric.points import Point
+from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.parametric.values import trial_times
+
+__all__ = ["Defined", "Ground", "Said", "coefficients_at", "defined_in", "said_in", "zeros_of"]
+
+
+@dataclass(frozen=True)
+class Said:
+    """A statement where it stands: in which step, in which row, of which cases it is said."""
+
+    step: Step
+    row: Mapping[str, Any]
+    statement: Statement
+    cases: tuple[int, ...]
+
+
+def said_in(step: Step, count: int) -> Iterator[Said]:
+    """Yield every statement of a step: its own, and those in its facts, however deep.
+
+    `count` is the number of cases; a step or row that names none is about all of them.
+    """
+    cases = step.facts.get("cases", tuple(range(count)))
+    for statement in step.statements:
+        yield Said(step, step.facts, statement, _numbers(cases))
+    yield from _inside(step, step.facts, step.facts, _numbers(cases))
+
+
+def _inside(
+    step: Step, row: Mapping[str, Any], item: object, cases: tuple[int, ...]
+) -> Iterator[Said]:
+    if isinstance(item, Statement):
+        yield Said(step, row, item, cases)
+    elif isinstance(item, Mapping):
+        own = _numbers(item.get("cases", cases))
+        for value in item.values():
+            yield from _inside(step, item, value, own)
+    elif isinstance(item, list | tuple):
+        for value in item:
+            yield from _inside(step, row, value, cases)
+
+
+def _numbers(cases: object) -> tuple[int, ...]:
+    if not isinstance(cases, tuple):
+        raise TypeError(f"{cases} are no numbers of cases")
+    return cases
+
+
+@dataclass(frozen=True)
+class Defined:
+    """A name with its definition in print: a formula, or a zero of a polynomial in one name."""
+
+    name: str
+    formula: Expression
+    cases: tuple[int, ...]
+    place: int | None = None
+    turned: bool = False
+
+
+def defined_in(steps: Sequence[Step], count: int) -> Iterator[Defined]:
+    """Yield the definitions in print, zeros of polynomials before formulas."""
+    said = [s for step in steps for s in said_in(step, count)]
+    for s in said:
+        if s.statement.says == "named zeros":
+            for name, place in zip(s.row["names"], s.row["places"], strict=True):
+                first = _formula(s.statement.sides[0])
+                yield Defined(name.text, first, s.cases, place, bool(s.row["turned"]))
+    for s in said:
+        left = s.statement.sides[0]
+        if s.statement.says in ("definition", "abbreviation", "restated"):
+            if not isinstance(left, Name):
+                raise TypeError(f"{left} is no name")
+            yield Defined(left.text, _formula(s.statement.sides[-1]), s.cases)
+
+
+def _formula(side: Side) -> Expression:
+    if not is_expression(side):
+        raise TypeError(f"{side} is no formula")
+    return side
+
+
+@dataclass(frozen=True)
+class Ground:
+    """One case at one point, at FLINT's current precision.
+
+    Nothing here may outlive the precision at which it was made: see `afresh`.
+    """
+
+    response: ParametricResponse
+    case: Case
+    point: Point
+    definitions: tuple[Defined, ...]
+
+    def afresh(self) -> Ground:
+        """Return the same at another precision: nothing is worked out yet."""
+        return replace(self)
+
+    @cached_property
+    def names(self) -> dict[str, Any]:
+        """The parameters, and every name that is defined in print for this case."""
+        found: dict[str, Any] = {name: acb(ball) for name, ball in self.point.balls().items()}
+        for defined in self.definitions:
+            if self.case.number not in defined.cases:
+                continue
+            if defined.place is None:
+                found[defined.name] = ball_at(defined.formula, found)
+            else:
+                found[defined.name] = _zero(defined, found)
+        return found
+
+    @cached_property
+    def _parameters(self) -> dict[str, arb]:
+        return self.point.balls()
+
+    def element(self, element: Scalar) -> acb:
+        """Return the value of an element of the field."""
+        return acb(self.response.model.field.enclose_at(element, self._parameters))
+
+    @cached_property
+    def matrix(self) -> acb_mat:
+        """A, from the model's own elements."""
+        return acb_mat([[self.element(e) for e in row] for row in self.response.model.matrix])
+
+    @cached_property
+    def initial(self) -> acb_mat:
+        """x0, from the model's own elements."""
+        return acb_mat([[self.element(e)] for e in self.response.model.initial])
+
+    @cached_property
+    def characteristic(self) -> acb_poly:
+        """det(lambda I - A)."""
+        return self.matrix.charpoly()
+
+    @cached_property
+    def instants(self) -> tuple[tuple[acb, acb_mat], ...]:
+        """Two rational times, and e^(At) then."""
+        n = self.matrix.nrows()
+        real = arb_mat(n, n, [e.real for e in self.matrix.entries()])
+        times = [acb(ball_of(t)) for t in trial_times(real)]
+        return tuple((t, (self.matrix * t).exp()) for t in times)
+
+    def at_time(self, time: acb) -> dict[str, Any]:
+        """Return the names with a value for the time."""
+        return self.names | {self.response.model.time: time}
+
+    def values(self, side: Side) -> list[acb]:
+        """Return what a side stands for: two numbers of a pair, one of a formula."""
+        if isinstance(side, Symbol) and side.kind in ("pair", "real pair"):
+            middle, distance = (ball_at(_formula(part), self.names) for part in side.parts)
+            if side.kind == "pair":
+                distance = distance * acb(0, 1)
+            return [middle + distance, middle - distance]
+        return [acb(ball_at(_formula(side), self.names))]
+
+    def matrix_of(self, matrix: Matrix, names: Mapping[str, Any] | None = None) -> acb_mat:
+        """Return the value of a matrix of formulas."""
+        return matrix_at(matrix, self.names if names is None else names)
+
+    def vanishing(self, place: str, value: acb) -> Finding:
+        """Return the finding that a number is 0, measured by the size of A."""
+        scale = max((abs(e).upper() for e in self.matrix.entries()), default=arb(1))
+        size = (1 + scale) ** self.matrix.nrows()
+        return Comparison(place, value, acb(0), scale=size)
+
+
+def coefficients_at(formula: Expression, variable: str, names: Mapping[str, Any]) -> acb_poly:
+    """Return a formula as a polynomial in one of its names, by interpolation."""
+    degree = _degree(formula, variable)
+    points = [acb(k) for k in range(degree + 1)]
+    values = [acb(ball_at(formula, {**names, variable: x})) for x in points]
+    return acb_poly.interpolate(points, values)
+
+
+def _degree(formula: Expression, variable: str) -> int:
+    """A bound of the degree: powers in polynomials add up."""
+    match formula:
+        case Name(text):
+            return int(text == variable)
+        case Number():
+            return 0
+        case Negation(inside) | Quotient(inside, _):
+            return _degree(inside, variable)
+        case Sum(parts):
+            return max(_degree(part, variable) for part in parts)
+        case Product(parts):
+            return sum(_degree(part, variable) for part in parts)
+        case Power(base, Number(exponent)):
+            return int(exponent) * _degree(base, variable)
+    return 0
+
+
+def zeros_of(polynomial: acb_poly) -> list[acb] | None:
+    """Return the isolated zeros by real part; None where they are not told apart."""
+    try:
+        roots: Any = polynomial.roots(tol=arb(2) ** (-3 * ctx.prec // 4))
+    except ValueError:  # not isolated at this precision
+        return None
+    found = sorted(roots, key=lambda z: float(z.real.mid()))
+    apart = all(not a.overlaps(b) for i, a in enumerate(found) for b in found[:i])
+    return found if apart else None
+
+
+def _zero(defined: Defined, names: Mapping[str, Any]) -> acb:
+    """The real zero at a place, counted by real part; not finite where it is not told apart."""
+    unknown = sorted(names_in(defined.formula) - set(names))
+    if len(unknown) != 1:
+        return acb("nan")
+    zeros = zeros_of(coefficients_at(defined.formula, unknown[0], names))
+    for zero in zeros or ():
+        if not zero.imag.contains(0):
+            continue
+        others = [z for z in zeros or () if z is not zero]
+        if any(z.overlaps(zero.conjugate()) for z in others):
+            continue
+        below = sum(bool(z.real < zero.real) for z in others)
+        same = sum(bool(z.real.overlaps(zero.real)) for z in others)
+        if below + same // 2 + 1 == defined.place:
+            return acb(-zero.real if defined.turned else zero.real)
+    return acb("nan")

@@ -1,0 +1,283 @@
+"""Every statement of a derivation with parameters, proved from what is printed.
+
+Each statement is made for certain cases.  It is evaluated from its tree at points of each of
+them, in complex balls, names from their definitions as printed, and held against the model's
+own matrix there.  The precision is doubled until all balls are narrow.
+Source:  F. Johansson, Arb: efficient arbitrary-precision midpoint-radius interval
+         arithmetic, IEEE Transactions on Computers 66 (2017).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator, Mapping, Sequence
+from typing import Any
+
+from flint import ctx
+
+from closedform.derivation.parametric.proof import exponential, model, spectrum
+from closedform.derivation.parametric.proof.ground import (
+    Defined,
+    Ground,
+    Said,
+    defined_in,
+    said_in,
+)
+from closedform.derivation.proof.evaluation import expressions_in
+from closedform.derivation.proof.finding import (
+    Comparison,
+    Fault,
+    Finding,
+    StatementRefutedError,
+    undecided,
+)
+from closedform.derivation.step import Step
+from closedform.notation.expression import names_in
+from closedform.response.parametric.points import case_points
+from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.record import Check, UnprovedError
+
+__all__ = ["prove_case_statements"]
+
+POINTS = 2
+_FIRST_BITS = 320
+_MOST_BITS = 1 << 14
+
+_Prover = Callable[[Ground, Said], Iterator[Finding]]
+
+
+def _within(ground: Ground, said: Said) -> Iterator[Finding]:
+    """A definition, proved where it is used."""
+    yield from ()
+
+
+_MODEL: dict[str, _Prover] = {
+    "system": model.system,
+    "matrix": model.matrix,
+    "initial": model.initial,
+    "output": model.output_definition,
+}
+"""What proves the statements of the model's own step."""
+
+_STATEMENTS: dict[str, _Prover] = {
+    "condition": model.comparison,
+    "case condition": model.comparison,
+    "sign": model.comparison,
+    "restated": model.stated,
+    "abbreviation": model.stated,
+    "identity": model.equation,
+    "sum of roots": model.equation,
+    "product of roots": model.equation,
+    "vanishing": model.equation,
+    "definition of a branch": model.equation,
+    "apart": model.none_of_all,
+    "characteristic polynomial": spectrum.polynomial,
+    "branch polynomial": spectrum.polynomial,
+    "eigenvalue": spectrum.eigenvalue,
+    "zero": spectrum.zero,
+    "factor": spectrum.divisor,
+    "named zeros": spectrum.named_zeros,
+    "polynomial in the square": spectrum.square,
+    "product of entries": spectrum.product_of_entries,
+    "block of the square": spectrum.block_of_square,
+    "sum of sizes": spectrum.sum_of_sizes,
+    "branch matrix": model.matrix,
+    "shared form": exponential.expansion,
+    "shared matrix": exponential.shared_matrix,
+    "resolvent": exponential.resolvent,
+    "adjugate": exponential.adjugate,
+    "residues": exponential.residues,
+    "slope": exponential.slope,
+    "expansion": exponential.expansion,
+    "exp A": exponential.transition,
+    "solution of state": exponential.function,
+    "output": exponential.function,
+    "definition": _within,
+    "substitution": _within,
+    "kernel": _within,
+    "residue matrix": _within,
+    "functions": _within,
+    "left out": _within,
+    "contradicted": _within,
+}
+"""What proves each statement, by what it says."""
+
+_VARIABLES = {
+    "characteristic polynomial": {"lambda"},
+    "branch polynomial": {"lambda"},
+    "factor": {"lambda"},
+    "substitution": {"lambda", "mu"},
+    "polynomial in the square": {"mu"},
+    "named zeros": {"lambda", "w"},
+    "resolvent": {"s"},
+    "adjugate": {"s"},
+    "eigenvalue": {"lambda"},
+}
+
+
+def prove_case_statements(response: ParametricResponse, steps: Sequence[Step]) -> Check:
+    """Return the check that every statement of the steps holds as printed, in its cases.
+
+    Raises:  StatementRefutedError for the first that does not hold, or that uses a name that
+             is not defined for one of its cases; UnprovedError if there is none, but some are
+             left open; ValueError for a kind of statement that nothing proves.
+    """
+    count = len(response.cases)
+    said = [s for step in steps for s in said_in(step, count)]
+    definitions = tuple(defined_in(steps, count))
+    for fault in _undefined(response, said, definitions):
+        raise StatementRefutedError(response.model.name, fault.place, fault.reason)
+    grounds = _grounds(response, definitions)
+    bits = _FIRST_BITS
+    while True:
+        with ctx.workprec(bits):
+            open_ones = [w for g in grounds for w in _wide(g.afresh(), steps, said)]
+        if not open_ones:
+            break
+        if bits >= _MOST_BITS:
+            _refuse(response, open_ones, bits)
+        bits = min(2 * bits, _MOST_BITS)
+    return Check(
+        "statements of the derivation",
+        "enclosed",
+        f"{len(said)} statements were evaluated from what is printed, each at points of every "
+        f"case that it is made for ({len(grounds)} in all), names by their definitions in print; "
+        "they agree with the model and the matrix exponential of ball arithmetic",
+    )
+
+
+def _grounds(response: ParametricResponse, definitions: tuple[Defined, ...]) -> list[Ground]:
+    """The points of all cases.  Raises UnprovedError if a case has none."""
+    found = []
+    for case in response.cases:
+        points = case_points(response.model.field, case, POINTS, seed=2)
+        if not points:
+            how = f"no point of case {case.number + 1} was found to put in"
+            check = Check("statements of the derivation", "not attempted", how)
+            raise UnprovedError(response.model.name, (check,))
+        found += [Ground(response, case, point, definitions) for point in points]
+    return found
+
+
+def _refuse(response: ParametricResponse, wide: Sequence[Comparison], bits: int) -> None:
+    name = response.model.name
+    for comparison in wide:
+        if comparison.has_no_value:
+            reason = f"it has no value, worked to {bits} bits"
+            raise StatementRefutedError(name, str(comparison), reason)
+    places = dict.fromkeys(map(str, wide))
+    how = f"not settled by {bits} bits"
+    raise UnprovedError(name, tuple(Check(place, "not attempted", how) for place in places))
+
+
+def _wide(ground: Ground, steps: Sequence[Step], said: Sequence[Said]) -> Iterator[Comparison]:
+    """Yield the comparisons that this precision does not settle.
+
+    Raises StatementRefutedError at the first thing that certainly is wrong.
+    """
+    name = ground.response.model.name
+    if not all(value.is_finite() for value in ground.names.values()):
+        lost = next(n for n, value in ground.names.items() if not value.is_finite())
+        yield undecided(f"{lost} of case {ground.case.number + 1}")
+        return
+    for finding in _findings(ground, steps, said):
+        if isinstance(finding, Fault):
+            where = f"{finding.place} (case {ground.case.number + 1} at {ground.point})"
+            raise StatementRefutedError(name, where, finding.reason)
+        if finding.is_apart:
+            raise StatementRefutedError(
+                name,
+                f"{finding} (case {ground.case.number + 1} at {ground.point})",
+                f"printed is {finding.printed.str(8)}, and true {finding.expected.str(8)}",
+            )
+        if not finding.is_settled:
+            yield finding
+
+
+def _findings(ground: Ground, steps: Sequence[Step], said: Sequence[Said]) -> Iterator[Finding]:
+    case = ground.case.number
+    for s in said:
+        prover = _prover(s)
+        if case in s.cases:
+            yield from prover(ground, s)
+    for step in steps:
+        if step.kind == "case_solution" and case in _of(step):
+            yield from exponential.shown(ground, step)
+        if step.kind == "branch" and case in _of(step):
+            for row in _rows(step, "repeated"):
+                yield from spectrum.repeated_row(ground, row)
+        if step.kind == "cases":
+            for row in _rows(step, "rows"):
+                if case in row["cases"]:
+                    yield from spectrum.case_row(ground, row)
+                    yield from exponential.functions(ground, row)
+            for row in (*_rows(step, "found"), *_rows(step, "plain")):
+                if case in row["cases"]:
+                    yield from _exceptional_row(ground, step, row)
+
+
+def _of(step: Step) -> tuple[int, ...]:
+    cases: Any = step.facts["cases"]
+    return tuple(cases)
+
+
+def _rows(step: Step, key: str) -> list[Mapping[str, Any]]:
+    rows: Any = step.facts[key]
+    return list(rows)
+
+
+def _exceptional_row(ground: Ground, step: Step, row: Mapping[str, Any]) -> Iterator[Finding]:
+    """Where a branch holds, not all the equations hold that lead away from it.
+
+    What is said to contradict itself does not hold at its points either.
+    """
+    equations = row["vanishing"]["equations"]
+    contradicted = [s for s in row["contradiction"] if getattr(s, "says", "") == "contradicted"]
+    if all(_may_hold(ground, Said(step, row, s, row["cases"])) for s in equations):
+        yield undecided("equation of a branch")
+    if contradicted and all(
+        _may_hold(ground, Said(step, row, s, row["cases"])) for s in contradicted
+    ):
+        yield undecided("conditions that contradict each other")
+
+
+def _may_hold(ground: Ground, said: Said) -> bool:
+    """Whether a comparison is not refuted."""
+    for finding in model.comparison(ground, said):
+        if isinstance(finding, Fault) or finding.is_apart:
+            return False
+    return True
+
+
+def _prover(said: Said) -> _Prover:
+    statement = said.statement
+    table = _MODEL if said.step.kind == "model" else _STATEMENTS
+    prover = table.get(statement.says)
+    if prover is None:
+        raise ValueError(f"nothing proves {statement.says!r} of the step {said.step.kind!r}")
+    if statement.relation != "=" and prover is not model.comparison:
+        if prover not in (spectrum.sum_of_sizes, _within):
+            raise ValueError(f"{statement.says!r} is said with {statement.relation!r}")
+    return prover
+
+
+def _undefined(
+    response: ParametricResponse, said: Sequence[Said], definitions: Sequence[Defined]
+) -> Iterator[Fault]:
+    """Every name in a formula is defined in print for its cases, and for each of them once."""
+    m = response.model
+    for case in range(len(response.cases)):
+        names = [d.name for d in definitions if case in d.cases]
+        for name in names:
+            if names.count(name) > 1:
+                yield Fault(name, f"it is defined twice for case {case + 1}")
+        known = {m.time, *m.field.parameters, *names}
+        for s in said:
+            if case not in s.cases:
+                continue
+            allowed = known | _VARIABLES.get(s.statement.says, set())
+            if s.step.kind == "model":
+                allowed = allowed | {*m.states, *(o.name for o in m.outputs)}
+            for side in s.statement.sides:
+                for formula in expressions_in(side):
+                    for name in sorted(names_in(formula) - allowed):
+                        yield Fault(s.statement.says, f"{name} is used and not defined")

@@ -1,0 +1,219 @@
+"""Why an element has a sign: arguments as sentences of words and mathematics.
+
+A sentence is a list of texts and statements.  What it states is proved as printed; that a
+sum of squares, or of terms of one sign, has that sign is left to the reader's eye.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.field import Scalar
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.sign_argument import (
+    ByCondition,
+    ByExpansion,
+    ByFactors,
+    BySquares,
+    ByTerms,
+    Combined,
+    Constant,
+    Sign,
+    SignArgument,
+    Square,
+    Undecided,
+)
+from closedform.derivation.parametric.formulas import compared, sign_statement
+from closedform.derivation.step import Side, Statement
+from closedform.notation.expression import (
+    Expression,
+    Negation,
+    Sum,
+    operations,
+    power_of,
+    product,
+)
+from closedform.notation.rational_formula import rational_formula
+from closedform.notation.terms import sum_of
+
+__all__ = ["Sentence", "contradiction_of", "reason_of"]
+
+Sentence = list[Side | Statement | str]
+
+SIGNS: dict[Sign, str] = {
+    "positive": "are positive",
+    "negative": "are negative",
+    "nonnegative": "are positive or zero",
+    "nonpositive": "are negative or zero",
+    "nonzero": "are not zero",
+    "zero": "are zero",
+    "unknown": "may have any sign",
+}
+
+
+def reason_of(field: ParameterField, argument: SignArgument, *, deep: bool = False) -> Sentence:
+    """Return why an element has its sign; `deep` adds why the parts of the argument have theirs."""
+    element = argument.element
+    said = sign_statement(field, element, argument.sign)
+    match argument.reason:
+        case Constant() | ByTerms() if len(field.names_in(element)) <= 1:
+            return [said]
+        case Constant():
+            return [said]
+        case ByTerms():
+            size = "positive" if argument.sign in ("positive", "nonnegative") else "negative"
+            zero = " or zero" if argument.sign in ("nonnegative", "nonpositive") else ""
+            return [said, f", as all its terms are {size}{zero}"]
+        case ByCondition(comparison, multiple, rest):
+            return _by_condition(field, argument, comparison, multiple, rest, deep=deep)
+        case BySquares(squares, rest):
+            return _by_squares(field, argument, squares, rest, deep=deep)
+        case ByFactors(_, factors):
+            sentence: Sentence = [said, ", by its factors:"]
+            for k, (factor, _) in enumerate(factors):
+                sentence += [", "] if k else []
+                sentence += _part(field, factor, deep=deep)
+            return sentence
+        case ByExpansion(comparison, _, coefficients):
+            return _by_expansion(field, argument, comparison, coefficients, deep=deep)
+        case Combined(arguments):
+            telling = [a for a in arguments if not isinstance(a.reason, Undecided)]
+            best = [a for a in telling if a.sign == argument.sign] or telling
+            if best[0].sign == argument.sign:
+                return reason_of(field, best[0], deep=deep)
+            sentence = []
+            for k, part in enumerate(telling):
+                sentence += ["; and"] if k else []
+                sentence += reason_of(field, part, deep=deep)
+            return sentence
+        case Undecided():
+            raise ValueError(f"no argument says which sign {element} has")
+
+
+def _part(field: ParameterField, argument: SignArgument, *, deep: bool) -> Sentence:
+    if deep and not isinstance(argument.reason, Undecided):
+        return reason_of(field, argument, deep=True)
+    return [sign_statement(field, argument.element, argument.sign)]
+
+
+def _by_condition(
+    field: ParameterField,
+    argument: SignArgument,
+    comparison: Comparison,
+    multiple: SignArgument,
+    rest: SignArgument | None,
+    *,
+    deep: bool,
+) -> Sentence:
+    said = sign_statement(field, argument.element, argument.sign)
+    condition = compared(field, comparison, "condition")
+    same = {said.sides, (*said.sides[1:], *said.sides[:1])}
+    if rest is None and (condition.sides in same or multiple.sign == "unknown"):
+        return [condition] if condition.sides in same else [said, ", as", condition]
+    if rest is None:
+        return [said, ", by", condition]
+    whole = rational_formula(field, argument.element)
+    inside = product(
+        [rational_formula(field, multiple.element), rational_formula(field, comparison.element)]
+    )
+    split = sum_of([inside, rational_formula(field, rest.element)])
+    sentence: Sentence = [said, ", as it is", _whole(whole, split), "with", condition]
+    sentence += [", ", *_part(field, rest, deep=deep)]
+    return sentence
+
+
+def _whole(whole: Expression, split: Expression) -> Side | Statement:
+    return Statement("identity", (whole, split))
+
+
+def _by_squares(
+    field: ParameterField,
+    argument: SignArgument,
+    squares: Sequence[Square],
+    rest: SignArgument | None,
+    *,
+    deep: bool,
+) -> Sentence:
+    terms = [_square(field, s) for s in squares]
+    terms += [] if rest is None else [rational_formula(field, rest.element)]
+    whole = rational_formula(field, argument.element)
+    split = sum_of(terms)
+    relation = sign_statement(field, argument.element, argument.sign).relation
+    zero = Statement("sign", (split, rational_formula(field, field.domain.zero)), relation)
+    sentence: Sentence = (
+        [zero] if operations(whole) < 3 else [Statement("identity", (whole, split))]
+    )
+    if sentence == [zero]:
+        return [*sentence, ", as squares are not negative"]
+    sentence += [zero.relation and f", a sum of parts that {SIGNS[argument.sign]}"]
+    if deep and rest is not None:
+        sentence += [":", *_part(field, rest, deep=True)]
+    return sentence
+
+
+def _square(field: ParameterField, square: Square) -> Expression:
+    weight = rational_formula(field, square.weight)
+    base = power_of(rational_formula(field, square.base), 2)
+    if isinstance(weight, Negation):
+        return Negation(product([weight.operand, base]))
+    return product([weight, base])
+
+
+def _by_expansion(
+    field: ParameterField,
+    argument: SignArgument,
+    comparison: Comparison,
+    coefficients: Sequence[SignArgument],
+    *,
+    deep: bool,
+) -> Sentence:
+    condition = compared(field, comparison, "condition")
+    said = sign_statement(field, argument.element, argument.sign)
+    if comparison.relation == "=":
+        first = coefficients[0]
+        return [said, ", as it is", _expression(field, first.element), "where", condition]
+    base = rational_formula(field, comparison.element)
+    terms = [
+        product([rational_formula(field, c.element), power_of(base, k)])
+        for k, c in enumerate(coefficients)
+        if c.element
+    ]
+    split = Sum(tuple(terms)) if len(terms) > 1 else terms[0]
+    whole = rational_formula(field, argument.element)
+    sentence: Sentence = [said, ", as it is", Statement("identity", (whole, split)), "with"]
+    sentence.append(condition)
+    if deep:
+        for c in coefficients:
+            if c.element and field.constant(c.element) is None:
+                sentence += [", ", *_part(field, c, deep=True)]
+    return sentence
+
+
+def _expression(field: ParameterField, element: Scalar) -> Side:
+    return rational_formula(field, element)
+
+
+def contradiction_of(
+    field: ParameterField, domain: ParameterDomain, contradicted: Sequence[Comparison]
+) -> Sentence:
+    """Return the sentence that conditions cannot hold together."""
+    statements = [compared(field, c, "contradicted") for c in contradicted]
+    known = [s for s, c in zip(statements, contradicted, strict=True) if c in domain.conditions]
+    new = [s for s in statements if s not in known]
+    sentence: Sentence = ["then"]
+    for k, statement in enumerate(new or statements):
+        sentence += ["and"] if k else []
+        sentence.append(statement)
+    if new and known:
+        sentence.append("would follow, against")
+        for k, statement in enumerate(known):
+            sentence += ["and"] if k else []
+            sentence.append(statement)
+    else:
+        sentence.append(
+            "would follow, which cannot be"
+            if len(statements) < 2
+            else "would follow, which cannot hold together"
+        )
+    return sentence
