@@ -25,7 +25,15 @@ from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.parametric_spectrum import parametric_spectrum, spectrum_under_relation
 from closedform.algebra.spectrum import Spectrum
 
-__all__ = ["MOST_BRANCHES", "Branch", "Equation", "Exceptional", "case_tree", "put_in"]
+__all__ = [
+    "MOST_BRANCHES",
+    "Branch",
+    "Equation",
+    "Exceptional",
+    "case_tree",
+    "linear_solution",
+    "put_in",
+]
 
 MOST_BRANCHES = 16
 """Branches that are solved, the generic one among them: more would be no use in print."""
@@ -217,14 +225,23 @@ def _equation(field: ParameterField, polynomial: Scalar, domain: ParameterDomain
     """
     choices = []
     for name in reversed(field.parameters):
-        slope = field.derivative(polynomial, name)
-        if not slope or name in field.names_in(slope):
+        solution = linear_solution(field, polynomial, name)
+        if solution is None:
             continue
-        rest = field.substituted(polynomial, {name: field.domain.zero})
+        slope = field.derivative(polynomial, name)
         plain = field.constant(slope) is not None
         if plain or domain.sign_of(slope).never_zero:
-            choices.append((not plain, Equation(polynomial, name, -rest / slope)))
+            choices.append((not plain, Equation(polynomial, name, solution)))
     return min(choices, key=lambda c: c[0])[1] if choices else Equation(polynomial)
+
+
+def linear_solution(field: ParameterField, element: Scalar, name: str) -> Scalar | None:
+    """Return the value of a parameter at which an element vanishes, if it is linear in it."""
+    polynomial = field.of_polynomial(element.numer)
+    slope = field.derivative(polynomial, name)
+    if not slope or name in field.names_in(slope):
+        return None
+    return -field.substituted(polynomial, {name: field.domain.zero}) / slope
 
 
 def _key(start: _Start) -> object:

@@ -171,7 +171,8 @@ def _written(
     if len(groups) == 1:
         return _written_group(field, groups[0], time)
     forms = []
-    for front in fronts_of([part.amount for group in groups for part in group.parts], few=few):
+    amounts = [part.amount for group in groups for part in group.parts]
+    for front in fronts_of(amounts, few=few, partial=len(groups) < 3):
         inside = _sum(field, [_divided(group, front) for group in groups], time)
         forms.append(inside if front == UNIT else _product(field, front, [], inside))
     return shortest_formula(forms, places_of(field.parameters))

@@ -62,7 +62,8 @@ class FunctionsAt:
         held = [self._sum(term.entries[place], t) for term in self.terms]
         if t.is_zero:  # Euler's formula
             return sum((coefficients[-1] for coefficients in held), SurdSum(()))
-        field = base_field([*(c for coefficients in held for c in coefficients), *self._numbers])
+        numbers = [c for coefficients in held for c in coefficients]
+        field = base_field([*numbers, *self._numbers, t])
         found: dict[Polynomial, Polynomial] = {}
         for term, coefficients in zip(self.terms, held, strict=True):
             r = _over(field, coefficients)

@@ -23,12 +23,16 @@ def over(value: Factored, divisor: Factored) -> Factored:
     )
 
 
-def fronts_of(amounts: Sequence[Factored], *, few: bool = False) -> tuple[Factored, ...]:
+def fronts_of(
+    amounts: Sequence[Factored], *, few: bool = False, partial: bool = True
+) -> tuple[Factored, ...]:
     """Return factors that may stand in front of a sum with these amounts, 1 first.
 
     They are made of the factors shared above, those shared below, and the least common
     denominator, with the number or without; each takes the sign of the first amount, or its
-    opposite.  `few` leaves out the signs and what is rarely the best.
+    opposite.  `few` leaves out the signs and what is rarely the best.  Without `partial` a
+    sum of several terms comes to the common denominator only if all amounts have it: a sum over
+    eigenvalues is read term by term, each over its own differences.
     """
     if not amounts:
         return (UNIT,)
@@ -39,7 +43,8 @@ def fronts_of(amounts: Sequence[Factored], *, few: bool = False) -> tuple[Factor
         low, high = min(exponents), max(exponents)
         above += [(factor, low)] if low > 0 else []
         below += [(factor, high)] if high < 0 else []
-        common += [(factor, low)] if low < 0 else []
+        if low < 0 and (partial or high < 0 or len(factor) == 1):
+            common.append((factor, low))
     numbers = [amount.content for amount in amounts]
     size = gcd(*(n.numerator for n in numbers))
     shared = gcd(*(n.denominator for n in numbers))

@@ -68,18 +68,21 @@ def in_numbers(formula: Expression, known: Known, time: str, digits: int) -> InN
     """
     writer = _Writer(known, time, digits)
     written = writer.written(writer.parted(formula))
-    return InNumbers(written, writer.rounded)
+    return InNumbers(written, bool(writer.rounded & names_in(written)))
 
 
 def decimal_formula(text: str) -> Expression:
     """Return a decimal as a formula, its sign outside."""
-    sign, digits = text.startswith("-"), text.removeprefix("-")
-    mantissa, _, exponent = digits.partition("e")
-    made: Expression = Name(mantissa) if "." in mantissa else number(Fraction(mantissa))
+    sign, mantissa, exponent = _split(text)
+    made: Expression = Name(mantissa)
     if exponent:
-        power = Power(number(10), number(int(exponent)))
-        made = product([made, power])
+        made = product([made, Power(number(10), number(int(exponent)))])
     return Negation(made) if sign else made
+
+
+def _split(text: str) -> tuple[bool, str, str]:
+    mantissa, _, exponent = text.removeprefix("-").partition("e")
+    return text.startswith("-"), mantissa, exponent
 
 
 class _Writer:
@@ -87,7 +90,7 @@ class _Writer:
 
     def __init__(self, known: Known, time: str, digits: int) -> None:
         self.known, self.time, self.digits = known, time, digits
-        self.rounded = False
+        self.rounded: set[str] = set()
 
     def parted(self, formula: Expression) -> _Part:
         """Return weight and functions whose product is the formula.
@@ -173,15 +176,19 @@ class _Writer:
     def _number(self, formula: Expression) -> Expression:
         value = self.known.value(formula)
         if value is not None and value.is_rational:
-            return self._rational(value.as_fraction())
-        self.rounded = True
-        return decimal_formula(self.known.decimal(formula, self.digits))
+            exact = self._rational(value.as_fraction())
+            if exact is not None:
+                return exact
+        text = self.known.decimal(formula, self.digits)
+        self.rounded.add(_split(text)[1])
+        return decimal_formula(text)
 
-    def _rational(self, value: Fraction) -> Expression:
+    def _rational(self, value: Fraction) -> Expression | None:
+        """Return a number that is short enough to stand as it is."""
+        if value.denominator == 1 and abs(value) < 10**self.digits:
+            return number(value)
         text = exact_decimal(value, self.digits)
         if Fraction(text) == value:
             return decimal_formula(text)
-        if len(str(abs(value.numerator))) + len(str(value.denominator)) <= self.digits:
-            return number(value)
-        self.rounded = True
-        return decimal_formula(text)
+        length = len(str(abs(value.numerator))) + len(str(value.denominator))
+        return number(value) if length <= self.digits else None

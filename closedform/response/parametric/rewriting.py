@@ -20,7 +20,7 @@ from closedform.algebra.parameter_field import ParameterField, ParameterPolynomi
 from closedform.notation.expression import Expression, operations
 from closedform.response.parametric.closed_form import Term, closed_form
 
-__all__ = ["Rewriting", "Shortest", "rewriting_for", "shortest"]
+__all__ = ["Extent", "Rewriting", "Shortest", "rewriting_for", "rewritten", "shortest"]
 
 TRIED = 16
 """Up to this number of combinations all are tried; else they are improved one by one."""
@@ -37,17 +37,27 @@ class Rewriting:
     power: int = 1
 
 
+Extent = Literal["everywhere", "rates"]
+"""Where a rewriting is applied: everywhere, or in rates and frequencies only."""
+
+
 @dataclass(frozen=True)
 class Shortest:
     """Functions as terms after rewriting, their formulas, and the abbreviations in them.
 
-    `rewritings` are those that were applied, in this order.
+    `rewritings` are those that were applied, in this order, each to the extent in `extents`.
     """
 
     functions: tuple[tuple[Term, ...], ...]
     formulas: tuple[Expression, ...]
     names: tuple[str, ...]
     rewritings: tuple[Rewriting, ...] = ()
+    extents: tuple[Extent, ...] = ()
+
+    @property
+    def used(self) -> tuple[tuple[Rewriting, Extent], ...]:
+        """The rewritings with their extents."""
+        return tuple(zip(self.rewritings, self.extents, strict=True))
 
 
 def rewriting_for(
@@ -104,7 +114,19 @@ def _restored(field: ParameterField, element: Scalar, rewriting: Rewriting) -> S
     return halves[0] / halves[1]
 
 
-Choice = tuple[Rewriting, Literal["everywhere", "rates"]] | None
+def rewritten(
+    field: ParameterField,
+    functions: Sequence[Sequence[Term]],
+    used: Sequence[tuple[Rewriting, Extent]],
+) -> tuple[tuple[Term, ...], ...]:
+    """Return functions with rewritings applied, one after the other, and nothing chosen.
+
+    Raises ArithmeticError if one of them changed a function.
+    """
+    return tuple(tuple(_rewritten(field, term, used) for term in terms) for terms in functions)
+
+
+Choice = tuple[Rewriting, Extent] | None
 """How one abbreviation is used: everywhere, in rates and frequencies only, or not at all."""
 
 
@@ -176,9 +198,7 @@ class _Search:
 
     def _tried(self, choices: tuple[Choice, ...]) -> int:
         used = [choice for choice in choices if choice is not None]
-        functions = tuple(
-            tuple(_rewritten(self.field, term, used) for term in terms) for terms in self.functions
-        )
+        functions = rewritten(self.field, self.functions, used)
         names = self._names_in(functions)
         cost = sum(self.definitions_cost[name] for name in names)
         formulas: list[Expression] = []
@@ -187,8 +207,13 @@ class _Search:
             cost += operations(formulas[-1])
             if self.least is not None and cost > self.least:
                 return cost
-        applied = tuple(rewriting for rewriting, _ in used)
-        self.results[choices] = Shortest(functions, tuple(formulas), names, applied)
+        self.results[choices] = Shortest(
+            functions,
+            tuple(formulas),
+            names,
+            tuple(rewriting for rewriting, _ in used),
+            tuple(extent for _, extent in used),
+        )
         self.least = cost
         return cost
 
@@ -212,7 +237,7 @@ def _elements(term: Term) -> Iterator[Scalar]:
 def _rewritten(
     field: ParameterField,
     term: Term,
-    used: Sequence[tuple[Rewriting, Literal["everywhere", "rates"]]],
+    used: Sequence[tuple[Rewriting, Extent]],
 ) -> Term:
     for rewriting, extent in used:
         amount, rate, frequency = term.amount, term.rate, term.frequency

@@ -1,0 +1,74 @@
+"""Abbreviations that results may be written with: the user's, and those of the trade."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+
+from closedform.algebra.branches import Branch
+from closedform.algebra.field import Scalar
+from closedform.algebra.parameter_field import ParameterField
+from closedform.model.parametric import ParametricModel
+from closedform.notation.expression import Call, Expression
+from closedform.notation.rational_formula import rational_formula
+from closedform.response.parametric.case import Origin
+from closedform.response.parametric.modes import Mode, perfect_root
+from closedform.response.parametric.quantities import Letters, Quantity, SquareRoot
+from closedform.response.parametric.rewriting import Rewriting, rewriting_for
+
+__all__ = ["Shortening", "rewritings_by_root", "trade_shortenings", "user_shortenings"]
+
+
+@dataclass(frozen=True)
+class Shortening:
+    """An abbreviation that may be used: name^power = value, an element of K."""
+
+    name: str
+    value: Scalar
+    power: int
+    origin: Origin
+
+    def formula(self, field: ParameterField) -> Expression:
+        """Return the formula that defines the name."""
+        value = rational_formula(field, self.value)
+        return Call("sqrt", value) if self.power == 2 else value
+
+
+def user_shortenings(model: ParametricModel, branch: Branch) -> Iterator[Shortening]:
+    """Yield the abbreviations of the model, as they read on a branch."""
+    for definition in model.abbreviations:
+        value = model.field.substituted(definition.value, branch.values)
+        if model.field.constant(value) is None:
+            yield Shortening(definition.name, value, 1, "user")
+
+
+def trade_shortenings(
+    field: ParameterField, modes: Sequence[Mode], letters: Letters
+) -> Iterator[Shortening]:
+    """The decay rate and the undamped frequency of a pair, and time constants."""
+    pairs = [m for m in modes if m.regime.kind in {"circular", "double", "hyperbolic"}]
+    damped = [m for m in pairs if m.factor.roots.centre]
+    for k, mode in enumerate(damped, start=1):
+        number = None if len(damped) == 1 else k
+        rate = -mode.factor.roots.centre
+        if len(field.names_in(rate)) > 1:
+            yield Shortening(letters.take("delta", number), rate, 1, "trade")
+        square = mode.factor.p.nth(0)
+        if len(field.names_in(square)) > 1 and perfect_root(field, square) is None:
+            yield Shortening(letters.take("omega_n", number), square, 2, "trade")
+    single = [m.factor.roots.centre for m in modes if m.regime.kind == "single"]
+    constants = [1 / -rate for rate in single if rate and rate.numer.is_ground]
+    constants = [c for c in constants if len(field.names_in(c)) > 1]
+    for k, value in enumerate(constants, start=1):
+        number = None if len(constants) == 1 else k
+        yield Shortening(letters.take("tau", number), value, 1, "trade")
+
+
+def rewritings_by_root(
+    field: ParameterField, writing: ParameterField, quantity: Quantity
+) -> Iterator[Rewriting]:
+    """A frequency that is a square root may stand for a parameter: k = m omega_n^2."""
+    if isinstance(quantity.definition, SquareRoot):
+        square = quantity.definition.square
+        if writing.names_in(square) <= set(field.parameters):
+            yield from rewriting_for(writing, quantity.name, square, 2)

@@ -1,0 +1,264 @@
+"""From a branch in one regime to a case: its functions in their shortest form."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+from closedform.algebra.branches import Branch, linear_solution
+from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.exponential import ExponentialMatrix
+from closedform.algebra.field import Scalar
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.regimes import Regime
+from closedform.model.parametric import ParametricModel
+from closedform.notation.expression import operations
+from closedform.notation.rational_formula import rational_formula
+from closedform.notation.shown import FormulaColumn, FormulaMatrix
+from closedform.response.parametric.case import Case, WrittenQuantity
+from closedform.response.parametric.closed_form import closed_form, fronted_matrix
+from closedform.response.parametric.definitions import definition_formula
+from closedform.response.parametric.mode_terms import terms_of
+from closedform.response.parametric.modes import Mode, modes_of, quantities_of
+from closedform.response.parametric.quantities import (
+    Definition,
+    Letters,
+    Quantity,
+    RootDefinition,
+    SquareRoot,
+    SumOfRoots,
+    Value,
+)
+from closedform.response.parametric.rewriting import (
+    Rewriting,
+    rewriting_for,
+    rewritten,
+    shortest,
+)
+from closedform.response.parametric.selection import case_conditions
+from closedform.response.parametric.shortenings import (
+    Shortening,
+    rewritings_by_root,
+    trade_shortenings,
+    user_shortenings,
+)
+from closedform.response.parametric.terms import Term
+
+__all__ = ["written_case"]
+
+
+@dataclass(frozen=True)
+class _Functions:
+    """The functions of a case as terms: solution and outputs, then e^(At) row by row."""
+
+    results: tuple[tuple[Term, ...], ...]
+    entries: tuple[tuple[Term, ...], ...]
+
+
+def written_case(
+    model: ParametricModel,
+    branch: Branch,
+    regimes: tuple[Regime, ...],
+    functions: tuple[ExponentialMatrix, ExponentialMatrix | None],
+    number: int,
+    like: Case | None = None,
+) -> Case:
+    """Return a branch in one regime, with its formulas in their shortest form.
+
+    `functions` are x(t) and the outputs.  `like` is a case of the same branch whose
+    abbreviations are taken over, so that the regimes can be read side by side.
+    """
+    field, n, m = model.field, len(model.states), len(model.outputs)
+    conditions, domain = case_conditions(model.domain, branch, regimes)
+    letters = Letters(_taken(model))
+    modes = modes_of(field, branch.spectrum.factors, regimes, letters)
+    shortenings = (*user_shortenings(model, branch), *trade_shortenings(field, modes, letters))
+    writing = _writing_field(model, modes, shortenings)
+    quantities = [q for mode in modes for q in quantities_of(field, writing, mode)]
+    rewritings = [
+        r
+        for s in shortenings
+        for r in rewriting_for(writing, s.name, field.into(writing, s.value), s.power)
+    ]
+    terms = _functions(field, writing, modes, branch.exponential, functions)
+    terms = _under_equations(writing, domain, modes, terms)
+    if like is None:
+        own = [r for q in quantities for r in rewritings_by_root(field, writing, q)]
+        costs = {s.name: operations(s.formula(field)) for s in shortenings}
+        costs |= dict.fromkeys((q.name for q in quantities), 0)
+        best = shortest(writing, terms.results, [*rewritings, *own], costs, model.time)
+        used = best.used
+    else:
+        known = {(name, parameter): extent for name, parameter, extent in like.abbreviated}
+        used = tuple(
+            (r, known[r.name, r.parameter]) for r in rewritings if (r.name, r.parameter) in known
+        )
+    results = rewritten(writing, terms.results, used)
+    entries = rewritten(writing, terms.entries, used)
+    formulas = [closed_form(writing, function, model.time) for function in results]
+    rows = [entries[i * n : (i + 1) * n] for i in range(n)]
+    transition = tuple(
+        tuple(closed_form(writing, function, model.time) for function in row) for row in rows
+    )
+    lifted = _lifted(field, writing, domain, quantities)
+    put = [r for r, _ in used if r in rewritings]
+    abbreviations = [s for s in shortenings if s.name in {r.name for r in put}]
+    written = [WrittenQuantity(s.name, s.formula(field), None, s.origin) for s in abbreviations]
+    written += [_written_quantity(lifted, q, put) for q in quantities]
+    return Case(
+        number,
+        branch,
+        regimes,
+        conditions,
+        domain,
+        modes,
+        tuple(written),
+        functions[0],
+        functions[1],
+        FormulaColumn(formulas[:n]),
+        FormulaColumn(formulas[n : n + m]),
+        FormulaMatrix(transition),
+        fronted_matrix(writing, rows, transition, model.time),
+        tuple((r.name, r.parameter, extent) for r, extent in used),
+    )
+
+
+def _writing_field(
+    model: ParametricModel, modes: Sequence[Mode], shortenings: Sequence[Shortening]
+) -> ParameterField:
+    """The parameters of A, then the names, then other parameters: the order of printing."""
+    field = model.field
+    entries = {n for row in model.matrix for e in row for n in field.names_in(e)}
+    return ParameterField(
+        parameters=(
+            *(n for n in field.parameters if n in entries),
+            *(name for mode in modes for name in mode.names),
+            *(s.name for s in shortenings),
+            *(n for n in field.parameters if n not in entries),
+        )
+    )
+
+
+def _functions(
+    field: ParameterField,
+    writing: ParameterField,
+    modes: Sequence[Mode],
+    exponential: ExponentialMatrix,
+    functions: Sequence[ExponentialMatrix | None],
+) -> _Functions:
+    def terms(function: ExponentialMatrix | None) -> tuple[tuple[Term, ...], ...]:
+        if function is None:
+            return ()
+        rows, columns = function.shape
+        return tuple(
+            tuple(terms_of(field, writing, modes, function, i, k))
+            for i in range(rows)
+            for k in range(columns)
+        )
+
+    results = tuple(part for function in functions for part in terms(function))
+    return _Functions(results, terms(exponential))
+
+
+def _under_equations(
+    writing: ParameterField, domain: ParameterDomain, modes: Sequence[Mode], terms: _Functions
+) -> _Functions:
+    """Use the equation D = 0 of a double root to leave out a parameter, if that is shorter."""
+    field = domain.field
+    if not any(mode.regime.kind == "double" for mode in modes):
+        return terms
+    forms = [terms]
+    for condition in domain.conditions:
+        if condition.relation != "=":
+            continue
+        for name in field.parameters:
+            solved = linear_solution(field, condition.element, name)
+            if solved is not None:
+                put = {name: field.into(writing, solved)}
+                forms.append(
+                    _Functions(
+                        tuple(_put_in(writing, function, put) for function in terms.results),
+                        tuple(_put_in(writing, function, put) for function in terms.entries),
+                    )
+                )
+    return min(forms, key=lambda f: _length(writing, f))
+
+
+def _put_in(
+    writing: ParameterField, function: Sequence[Term], put: dict[str, Scalar]
+) -> tuple[Term, ...]:
+    return tuple(
+        replace(
+            term,
+            amount=writing.substituted(term.amount, put),
+            rate=writing.substituted(term.rate, put),
+        )
+        for term in function
+    )
+
+
+def _length(writing: ParameterField, terms: _Functions) -> int:
+    return sum(
+        operations(rational_formula(writing, term.amount))
+        for function in terms.results
+        for term in function
+        if term.amount
+    )
+
+
+def _taken(model: ParametricModel) -> set[str]:
+    """Every name of the model: nothing else is given one that prints like it."""
+    return {
+        *model.states,
+        model.time,
+        *(output.name for output in model.outputs),
+        *(parameter.name for parameter in model.parameters),
+        *(definition.name for definition in (*model.abbreviations, *model.restated)),
+    }
+
+
+def _lifted(
+    field: ParameterField,
+    writing: ParameterField,
+    domain: ParameterDomain,
+    quantities: Sequence[Quantity],
+) -> ParameterDomain:
+    """The domain over the writing field, with the names that are known to be positive."""
+    conditions = [Comparison(field.into(writing, c.element), c.relation) for c in domain.conditions]
+    conditions += [Comparison(writing.symbol(q.name), ">") for q in quantities if q.positive]
+    return ParameterDomain(writing, tuple(conditions))
+
+
+def _written_quantity(
+    domain: ParameterDomain, quantity: Quantity, chosen: Sequence[Rewriting]
+) -> WrittenQuantity:
+    """Return a quantity with its definition in the shortest form that the abbreviations allow."""
+    if isinstance(quantity.definition, RootDefinition):
+        return WrittenQuantity(quantity.name, None, quantity.definition, "roots")
+    forms = [definition_formula(domain, quantity.definition)]
+    forms += [
+        definition_formula(domain, _rewritten(domain.field, quantity.definition, put))
+        for put in (*([r] for r in chosen), chosen)
+        if put
+    ]
+    formula = min((f for f in forms if f is not None), key=operations)
+    return WrittenQuantity(quantity.name, formula, None, "roots")
+
+
+def _rewritten(
+    field: ParameterField, definition: Definition, rewritings: Sequence[Rewriting]
+) -> Definition:
+    def put(element: Scalar) -> Scalar:
+        for r in rewritings:
+            element = field.substituted(element, {r.parameter: r.replacement})
+        return element
+
+    match definition:
+        case Value(value):
+            return Value(put(value))
+        case SquareRoot(square):
+            return SquareRoot(put(square))
+        case SumOfRoots(total, last, sign, rooted):
+            return SumOfRoots(put(total), put(last), sign, rooted)
+        case _:
+            return definition
