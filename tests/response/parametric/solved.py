@@ -148,6 +148,7 @@ VALUES: dict[str, list[Values]] = {
         "-1 1/2 1",
         "1 1/10 2",
         "-4 1 1",
+        "4 15/8 1",
         f"-4 1 1+{NEAR}",
     ),
     "symmetric": rows("g1 g2 h T", "1 2 3 1", "1 1 3 1", f"1 1+{NEAR} 1 1"),
