@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from closedform.derivation.build import derive
+from closedform.derivation.parametric.build import derive_cases
 from closedform.derivation.step import Derivation
 from closedform.document.engine import compile_pdf
 from closedform.document.files import write_whole
@@ -94,8 +95,6 @@ def _made(model: Model, digits: int) -> _Made:
 
 def _in_cases(model: ParametricModel, digits: int) -> _Made:
     """As `_made`; the values of the model are put in, and held against a numeric solution."""
-    from closedform.derivation.parametric.build import derive_cases
-
     response = respond_in_cases(model)
     records = verify_cases(response)
     numbers = numbers_of(response, digits=digits)
