@@ -16,6 +16,7 @@ from closedform.verification.record import Check
 
 __all__ = [
     "cautions_step",
+    "exact_number",
     "outputs_step",
     "solution_step",
     "transition_step",
@@ -91,7 +92,7 @@ def values_step(response: Response, digits: int) -> Step:
     if response.output is not None:
         columns.append(sampled(response.output, times, digits))
     rows = [
-        [_instant(time), *(value for column in columns for value in column[i])]
+        [exact_number(time), *(value for column in columns for value in column[i])]
         for i, time in enumerate(times)
     ]
     header: list[Side] = [t, *(_function(name, t) for name in names)]
@@ -99,7 +100,8 @@ def values_step(response: Response, digits: int) -> Step:
     return Step("values", (), facts, ("solution",), "summary")
 
 
-def _instant(time: SurdSum) -> str:
+def exact_number(time: SurdSum) -> str:
+    """Return an exact number as text: a decimal if it ends, else a formula."""
     if time.is_rational:
         value = time.as_fraction()
         denominator = value.denominator

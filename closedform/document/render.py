@@ -9,6 +9,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, TypeVar, get_args
 
 from closedform.derivation.step import Depth, Derivation, Symbol
+from closedform.document.beside import displayed_beside
 from closedform.document.latex import fits
 from closedform.document.phrases import FILTERS, FUNCTIONS
 from closedform.document.references import References
@@ -210,6 +211,7 @@ def _environment(loader: BaseLoader, references: References) -> Environment:
     environment.globals |= {
         "display": references.display,
         "displays": references.displays,
+        "beside": displayed_beside,
         "cite": references.cite,
         "refer": references.refer,
         "section_label": references.section,

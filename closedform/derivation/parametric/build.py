@@ -18,8 +18,8 @@ from closedform.derivation.parametric.proof.statements import prove_case_stateme
 from closedform.derivation.parametric.result_steps import (
     branch_step,
     case_solution_step,
-    verification_step,
 )
+from closedform.derivation.parametric.verification_step import verification_step
 from closedform.derivation.result_steps import cautions_step
 from closedform.derivation.step import Derivation, Step
 from closedform.response.parametric.quantities import Letters

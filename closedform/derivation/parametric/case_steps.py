@@ -85,7 +85,10 @@ def _exceptional_row(
             "apart", tuple(rational_formula(field, p) for p in exceptional.polynomials)
         ),
         "vanishing": {
-            "equations": [_equation(field, branch, p) for p in exceptional.polynomials],
+            "equations": [
+                Statement("vanishing", (rational_formula(field, p), ZERO))
+                for p in exceptional.polynomials
+            ],
             "cases": (),
         },
         "why": [],

@@ -49,6 +49,7 @@ def definitions_of(
     model = response.model
     own = {d.name for d in model.abbreviations}
     formulas: list[dict[str, object]] = []
+    here = tuple(c.number for c in cases)
     for case in cases:
         for quantity in case.quantities:
             if quantity.formula is None or (quantity.name in own and quantity.origin == "user"):
@@ -64,9 +65,12 @@ def definitions_of(
                     "statement": statement,
                     "cases": _holding(response, quantity),
                     "words": _words(quantity),
+                    "only": _only(_holding(response, quantity), here),
                 }
             )
-    return Definitions(formulas, [row for case in cases for row in _roots(response, case, told)])
+    return Definitions(
+        formulas, [row for case in cases for row in _roots(response, case, told, here)]
+    )
 
 
 def _words(quantity: WrittenQuantity) -> str:
@@ -88,7 +92,15 @@ def _holding(response: ParametricResponse, quantity: WrittenQuantity) -> tuple[i
     return tuple(c.number for c in response.cases if any(map(same, c.quantities)))
 
 
-def _roots(response: ParametricResponse, case: Case, told: set[object]) -> list[dict[str, object]]:
+def _only(holding: tuple[int, ...], here: tuple[int, ...]) -> tuple[int, ...]:
+    """The cases of a branch in which a name is used, if these are not all of them."""
+    used = tuple(number for number in here if number in holding)
+    return () if used == here else used
+
+
+def _roots(
+    response: ParametricResponse, case: Case, told: set[object], here: tuple[int, ...]
+) -> list[dict[str, object]]:
     """One row for each factor that has named roots."""
     field = response.model.field
     rows: list[dict[str, object]] = []
@@ -114,6 +126,8 @@ def _roots(response: ParametricResponse, case: Case, told: set[object]) -> list[
                 "order": _order(mode.regime.kind, fresh),
                 "kind": mode.regime.kind,
                 "cases": _holding(response, fresh[0]),
+                "only": _only(_holding(response, fresh[0]), here),
+                "told": case.branch.number == 0 and polynomial == mode.factor.polynomial,
                 "degree": degree,
             }
         )

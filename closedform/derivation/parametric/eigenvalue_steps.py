@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from closedform.algebra.factor_structure import FactorStructure
+from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.spectrum import Factor
 from closedform.derivation.formulas import LAMBDA, eigenvalue_symbol
@@ -15,10 +16,14 @@ from closedform.derivation.parametric.spectrum import values_of
 from closedform.derivation.parametric.structure_steps import structure_facts
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.notation.expression import (
+    ONE,
     ZERO,
     Call,
     Expression,
     Name,
+    Negation,
+    Product,
+    Quotient,
     Sum,
     power_of,
     product,
@@ -81,6 +86,7 @@ def _row(
     else:
         polynomial = polynomial_formula(field, factor.polynomial, LAMBDA)
         row["polynomial"] = Statement("factor", (polynomial, ZERO))
+        row["whole"] = factor.degree == len(response.model.states)
         if structure is not None:
             row["structure"] = structure_facts(field, structure, len(response.model.states))
         row |= _roots(field, cases, factor, place, numbers)
@@ -120,7 +126,7 @@ def _quadratic(
     row: dict[str, object] = {
         "statements": (
             Statement("eigenvalue", (symbol, root)),
-            Statement("definition", (name, rational_formula(field, discriminant))),
+            Statement("definition", (name, _over_one(field, discriminant))),
         ),
         "name": name,
         "regimes": [
@@ -138,6 +144,28 @@ def _quadratic(
     row["why"] = reason_of(field, argument) if argument.sign != "unknown" else []
     row["fully"] = reason_of(field, argument, deep=True) if argument.sign != "unknown" else []
     return row
+
+
+def _over_one(field: ParameterField, element: Scalar) -> Expression:
+    """An element as one fraction, unless it is shorter and without fractions in fractions."""
+    written = rational_formula(field, element)
+    above = rational_formula(field, field.of_polynomial(element.numer))
+    below = rational_formula(field, field.of_polynomial(element.denom))
+    nested = isinstance(written, Quotient) and _has_quotient(written.numerator)
+    if below == ONE or not nested:
+        return written
+    return Quotient(above, below)
+
+
+def _has_quotient(formula: Expression) -> bool:
+    match formula:
+        case Quotient():
+            return True
+        case Sum(parts) | Product(parts):
+            return any(map(_has_quotient, parts))
+        case Negation(inside):
+            return _has_quotient(inside)
+    return False
 
 
 _RELATIONS = {"circular": "<", "double": "=", "hyperbolic": ">"}

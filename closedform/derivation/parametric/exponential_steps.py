@@ -10,14 +10,16 @@ from closedform.algebra.exponential import ModalTerm
 from closedform.algebra.field import FieldMatrix
 from closedform.algebra.parameter_field import ParameterField
 from closedform.derivation.formulas import A
+from closedform.derivation.parametric.case_steps import case_conditions_of
 from closedform.derivation.parametric.formulas import (
     element_matrix,
     exponential,
     factored_formula,
     named_or_written,
+    polynomial_formula,
 )
 from closedform.derivation.parametric.spectrum import kernels_of, real_eigenvalues
-from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
+from closedform.derivation.step import Depth, Matrix, Side, Statement, Step, Symbol
 from closedform.notation.expression import (
     ONE,
     ZERO,
@@ -31,6 +33,7 @@ from closedform.notation.expression import (
     power_of,
     product,
 )
+from closedform.notation.rational_formula import rational_formula
 from closedform.notation.terms import negated, sum_of
 from closedform.response.parametric.case import Case
 from closedform.response.parametric.modes import Mode
@@ -125,8 +128,6 @@ def _function(name: str, t: Name) -> Symbol:
 def _kernel_row(
     response: ParametricResponse, case: Case, place: int, kernels: tuple[Symbol, Symbol]
 ) -> dict[str, object]:
-    from closedform.derivation.parametric.case_steps import case_conditions_of
-
     found = kernels_of(response.model.field, case.modes[place], response.model.time)
     if found is None:
         raise TypeError("only a pair has an even and an odd function")
@@ -152,16 +153,18 @@ def _transform_step(response: ParametricResponse, cases: Sequence[Case], letters
             ),
         )
     ]
+    statements.append(
+        Statement("numerator", (_numerator(s), Symbol("adjugate", argument=s, letter="A")))
+    )
     facts: dict[str, object] = {
-        "written": n <= ADJUGATE_UP_TO,
+        "n": n,
         "cases": tuple(c.number for c in cases),
         "kernels": [],
         "only": len(response.cases) == 1,
     }
     if n <= ADJUGATE_UP_TO:
-        adjugate = Symbol("adjugate", argument=s, letter="A")
         rows = _adjugate(model.field, case.branch.matrix)
-        statements.append(Statement("adjugate", (_numerator(s), adjugate, Matrix(rows))))
+        statements.append(Statement("adjugate", (_numerator(s), Matrix(rows))))
     factors = case.branch.spectrum.factors
     simple = all(f.multiplicity == 1 for f in factors)
     short = all(
@@ -196,7 +199,7 @@ def _denominator(s: Name) -> Symbol:
 
 
 def _adjugate(field: ParameterField, matrix: FieldMatrix) -> tuple[tuple[Expression, ...], ...]:
-    """adj(s I - A) = sum of B_k s^(n-1-k), B_k = A B_(k-1) + c_k I.
+    """adj(s I - A) = sum of B_k s^(n-1-k), B_k = A B_(k-1) + c_k I; or by minors, if shorter.
 
     Source:  D. K. Faddeev and V. N. Faddeeva, Computational Methods of Linear Algebra, 1963.
     """
@@ -206,29 +209,66 @@ def _adjugate(field: ParameterField, matrix: FieldMatrix) -> tuple[tuple[Express
     for c in coefficients[1:n]:
         parts.append(matrix * parts[-1] + field.identity(n) * c)
     rows = [part.to_list() for part in parts]
-    return tuple(
-        tuple(
-            factored_formula(field, field.polynomial([part[i][k] for part in rows]), Name("s"))
-            for k in range(n)
-        )
-        for i in range(n)
+    s = Name("s")
+
+    def entry(i: int, k: int) -> Expression:
+        polynomial = field.polynomial([part[i][k] for part in rows])
+        written = factored_formula(field, polynomial, s)
+        if n != 3 or written == ZERO:
+            return written
+        return min(written, _minor(field, matrix, k, i), key=operations)
+
+    return tuple(tuple(entry(i, k) for k in range(n)) for i in range(n))
+
+
+def _minor(field: ParameterField, matrix: FieldMatrix, row: int, column: int) -> Expression:
+    """The cofactor of s I - A at an entry, as a difference of two products; n = 3."""
+    above, below = (i for i in range(3) if i != row)
+    left, right = (k for k in range(3) if k != column)
+    rows = matrix.to_list()
+
+    def at(i: int, k: int) -> Expression:
+        element = rows[i][k]
+        if i != k:
+            return rational_formula(field, -element)
+        return polynomial_formula(field, [field.domain.one, -element], Name("s"))
+
+    sign = -1 if (row + column) % 2 else 1
+    return sum_of(
+        [
+            _signed_product(sign, at(above, left), at(below, right)),
+            _signed_product(-sign, at(above, right), at(below, left)),
+        ]
     )
+
+
+def _signed_product(sign: int, first: Expression, second: Expression) -> Expression:
+    """Sign · first · second, its sign outside."""
+    negative, sizes = sign < 0, []
+    for factor in (first, second):
+        negative ^= isinstance(factor, Negation)
+        sizes.append(factor.operand if isinstance(factor, Negation) else factor)
+    whole = ZERO if ZERO in sizes else product(sizes)
+    return Negation(whole) if negative and whole != ZERO else whole
 
 
 def _slopes(response: ParametricResponse, case: Case) -> Iterator[Statement]:
     """p'(lambda) at the roots that are printed one by one, as products of differences."""
     field = response.model.field
     values = [(m, v) for m in case.modes for v in real_eigenvalues(field, case, m)]
-    for mode, value in values:
+    for _, value in values:
         argument = Symbol("scalar", letter="p", order=1, argument=value)
-        parts: list[Expression] = []
-        for other, root in values:
-            if root != value:
-                parts.append(_difference(value, root))
-        for other in case.modes:
-            if not real_eigenvalues(field, case, other):
-                parts.append(_polynomial_at(field, other, value))
-        yield Statement("slope", (argument, product(parts)))
+        parts = [_difference(value, root) for _, root in values if root != value]
+        parts += [
+            _polynomial_at(field, other, value)
+            for other in case.modes
+            if not real_eigenvalues(field, case, other)
+        ]
+        negative = sum(isinstance(part, Negation) for part in parts) % 2 == 1
+        sizes = [part.operand if isinstance(part, Negation) else part for part in parts]
+        sizes.sort(key=lambda part: isinstance(part, Sum))
+        whole = product(sizes)
+        yield Statement("slope", (argument, Negation(whole) if negative else whole))
 
 
 def _difference(value: Expression, root: Expression) -> Expression:
@@ -243,8 +283,6 @@ def _difference(value: Expression, root: Expression) -> Expression:
 
 
 def _polynomial_at(field: ParameterField, mode: Mode, value: Expression) -> Expression:
-    from closedform.notation.rational_formula import rational_formula
-
     degree = mode.factor.degree
     terms = []
     for k, c in enumerate(mode.factor.polynomial):
@@ -321,8 +359,6 @@ def _single(
 
 def transition_step(response: ParametricResponse, case: Case, *, shared: bool) -> Step:
     """State e^(At) entry by entry in one case."""
-    from closedform.derivation.parametric.case_steps import case_conditions_of
-
     front, rows = case.fronted
     size = sum(operations(entry) for row in rows for entry in row)
     statement = Statement(
@@ -335,5 +371,5 @@ def transition_step(response: ParametricResponse, case: Case, *, shared: bool) -
         "conditions": case_conditions_of(case),
         "generic": case.branch.number == 0,
     }
-    depth = "full" if shared or size > SMALL else "working"
+    depth: Depth = "full" if shared or size > SMALL else "working"
     return Step("case_transition", (statement,), facts, ("transform",), depth)

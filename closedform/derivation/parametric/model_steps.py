@@ -4,12 +4,14 @@ from __future__ import annotations
 
 from closedform.algebra.branches import Branch, uncovered
 from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.surds import SurdSum
 from closedform.derivation.formulas import LAMBDA, A, column
 from closedform.derivation.parametric.formulas import (
     as_given,
     compared,
     polynomial_formula,
 )
+from closedform.derivation.result_steps import exact_number
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.model.parameters import assumed
 from closedform.model.parametric import Definition, Parameter, ParametricOutput
@@ -97,6 +99,7 @@ def model_step(response: ParametricResponse) -> Step:
         "time": model.time,
         "n": len(model.states),
         "outputs": [output.name for output in model.outputs],
+        "compact": True,
     }
     return Step("model", tuple(statements), facts, depth="summary")
 
@@ -150,8 +153,14 @@ def _row(field: ParameterField, parameter: Parameter) -> dict[str, object]:
         "meaning": parameter.meaning,
         "unit": parameter.unit,
         "assumption": "real" if found is None else compared(field, found[1], "condition"),
-        "value": None if parameter.value is None else surd_formula(parameter.value),
+        "value": None if parameter.value is None else _value(parameter.value),
     }
+
+
+def _value(value: SurdSum) -> str | Expression:
+    """A decimal as text, and anything else as a formula."""
+    text = exact_number(value)
+    return text if text.strip("-0123456789.") == "" else surd_formula(value)
 
 
 def _told(definition: Definition) -> dict[str, object]:
@@ -173,7 +182,7 @@ def characteristic_polynomial_step(response: ParametricResponse) -> Step:
     if factored != expanded:
         sides.append(factored)
     statement = Statement("characteristic polynomial", tuple(sides))
-    facts = {"degree": len(response.model.states)}
+    facts = {"degree": len(response.model.states), "brief": True}
     return Step("characteristic_polynomial", (statement,), facts, ("model",))
 
 

@@ -7,7 +7,6 @@ from collections.abc import Sequence
 from closedform.algebra.branches import Branch
 from closedform.algebra.parameter_field import ParameterField
 from closedform.derivation.formulas import A
-from closedform.derivation.identities import printed_item
 from closedform.derivation.parametric.case_steps import case_conditions_of
 from closedform.derivation.parametric.formulas import as_given
 from closedform.derivation.parametric.model_steps import factored_polynomial
@@ -20,7 +19,7 @@ from closedform.response.response import LARGEST_WRITTEN_OUT
 from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.record import Check
 
-__all__ = ["branch_step", "case_solution_step", "verification_step"]
+__all__ = ["branch_step", "case_solution_step"]
 
 MATRIX_UP_TO = 5
 LIMIT = "limit of the neighbouring case"
@@ -117,36 +116,3 @@ def _repeated(field: ParameterField, cases: Sequence[Case]) -> list[dict[str, ob
                 }
             )
     return found
-
-
-def verification_step(
-    whole: Sequence[Check], records: CaseRecords, response: ParametricResponse
-) -> Step:
-    """List what was proved: of all together, in every case, and of single cases."""
-    time = response.model.time
-
-    def row(check: Check, group: str) -> dict[str, object]:
-        return {
-            "item": printed_item(check.item, time),
-            "outcome": check.outcome,
-            "how": check.how,
-            "group": group,
-        }
-
-    several = len(records.cases) > 1
-    rows = [row(check, "Of all cases together" if several else "") for check in whole]
-    common = _common(records)
-    every = f"In each of the {len(records.cases)} cases" if several else ""
-    rows += [row(check, every) for check in common]
-    for case, record in zip(response.cases, records.cases, strict=True):
-        own = [check for check in record.checks if check not in common]
-        rows += [row(check, f"In case {case.number + 1}" if several else "") for check in own]
-    return Step("verification", (), {"rows": rows}, depth="summary")
-
-
-def _common(records: CaseRecords) -> list[Check]:
-    """The checks that stand alike in the record of every case."""
-    if not records.cases:
-        return []
-    first, *others = records.cases
-    return [c for c in first.checks if all(c in record.checks for record in others)]

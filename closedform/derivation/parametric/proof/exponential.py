@@ -18,7 +18,7 @@ from closedform.derivation.proof.finding import (
     undecided,
     whether,
 )
-from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
+from closedform.derivation.step import Matrix, Side, Step, Symbol
 from closedform.notation.expression import Name, is_expression
 
 __all__ = [
@@ -26,6 +26,7 @@ __all__ = [
     "expansion",
     "function",
     "functions",
+    "numerator",
     "residues",
     "resolvent",
     "shared_matrix",
@@ -53,6 +54,16 @@ def resolvent(ground: Ground, said: Said) -> Iterator[Finding]:
         ),
     )
     yield from whether(said.statement.sides == expected, "resolvent", "it is another equation")
+
+
+def numerator(ground: Ground, said: Said) -> Iterator[Finding]:
+    """N(s) = adj(s I - A): nothing but this is said."""
+    s = Name("s")
+    expected = (
+        Symbol("matrix", letter="N", argument=s),
+        Symbol("adjugate", letter="A", argument=s),
+    )
+    yield from whether(said.statement.sides == expected, "numerator", "it is another equation")
 
 
 def adjugate(ground: Ground, said: Said) -> Iterator[Finding]:
@@ -105,9 +116,8 @@ def shared_matrix(ground: Ground, said: Said) -> Iterator[Finding]:
             yield from agreeing("V", ground.matrix_of(side), _expected_shift(ground, said))
         elif isinstance(side, Symbol) and side.kind == "shifted" and side.argument is not None:
             shift = ball_at(side.argument, ground.names)
-            trace = ground.matrix.trace() if hasattr(ground.matrix, "trace") else None
             mean = sum((ground.matrix[i, i] for i in range(n)), acb(0)) / n
-            yield Comparison("V", shift, trace / n if trace is not None else mean)
+            yield ground.vanishing("V", shift - mean)
         else:
             yield from whether(side == Symbol("matrix", letter="A"), "V", "it is another matrix")
 

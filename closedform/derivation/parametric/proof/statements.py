@@ -84,6 +84,7 @@ _STATEMENTS: dict[str, _Prover] = {
     "shared form": exponential.expansion,
     "shared matrix": exponential.shared_matrix,
     "resolvent": exponential.resolvent,
+    "numerator": exponential.numerator,
     "adjugate": exponential.adjugate,
     "residues": exponential.residues,
     "slope": exponential.slope,
@@ -109,6 +110,7 @@ _VARIABLES = {
     "polynomial in the square": {"mu"},
     "named zeros": {"lambda", "w"},
     "resolvent": {"s"},
+    "numerator": {"s"},
     "adjugate": {"s"},
     "eigenvalue": {"lambda"},
 }
