@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
 from closedform.derivation.parametric.case_steps import cases_step
 from closedform.derivation.parametric.definitions import definitions_of
@@ -14,6 +14,7 @@ from closedform.derivation.parametric.model_steps import (
     not_covered_step,
     parameters_step,
 )
+from closedform.derivation.parametric.numbers_step import numbers_step
 from closedform.derivation.parametric.proof.statements import prove_case_statements
 from closedform.derivation.parametric.result_steps import (
     branch_step,
@@ -22,6 +23,7 @@ from closedform.derivation.parametric.result_steps import (
 from closedform.derivation.parametric.verification_step import verification_step
 from closedform.derivation.result_steps import cautions_step
 from closedform.derivation.step import Derivation, Step
+from closedform.response.parametric.numbers import NumbersAt
 from closedform.response.parametric.quantities import Letters
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.record import CaseRecords
@@ -34,11 +36,12 @@ def derive_cases(
     records: CaseRecords,
     *,
     digits: int = 6,
-    numbers: object = None,
+    numbers: Sequence[NumbersAt] | None = None,
 ) -> Derivation:
     """Return the derivation of a response with parameters whose records hold.
 
-    Every statement in it is proved once more as it will be printed, at points of the cases
+    `numbers` are the results at the values that the model gives, if it gives any, with `digits`
+    significant digits.  Every statement in it is proved once more as it will be printed, at points of the cases
     it is made for, and the last check about the whole says so.
 
     Raises:  ValueError if the records do not hold: nothing is derived from what is not proved;
@@ -47,13 +50,18 @@ def derive_cases(
     """
     if not records.holds:
         raise ValueError("only a response that was proved is derived")
-    steps = tuple(_steps(response, records))
+    steps = tuple(_steps(response, records, numbers or (), digits))
     checks = (*records.whole.checks, prove_case_statements(response, steps))
     ends = (verification_step(checks, records, response), cautions_step())
     return Derivation(response.model.title, (*steps, *ends), checks)
 
 
-def _steps(response: ParametricResponse, records: CaseRecords) -> Iterator[Step]:
+def _steps(
+    response: ParametricResponse,
+    records: CaseRecords,
+    numbers: Sequence[NumbersAt],
+    digits: int,
+) -> Iterator[Step]:
     uncovered = not_covered_step(response)
     if uncovered is not None:
         yield uncovered
@@ -85,6 +93,9 @@ def _steps(response: ParametricResponse, records: CaseRecords) -> Iterator[Step]
             yield transition_step(response, case, shared=shared)
         for case in cases:
             yield case_solution_step(response, case)
+    in_numbers = numbers_step(response, numbers, digits)
+    if in_numbers is not None:
+        yield in_numbers
 
 
 def _letters(response: ParametricResponse) -> Letters:

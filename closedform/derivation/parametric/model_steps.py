@@ -4,14 +4,13 @@ from __future__ import annotations
 
 from closedform.algebra.branches import Branch, uncovered
 from closedform.algebra.parameter_field import ParameterField
-from closedform.algebra.surds import SurdSum
 from closedform.derivation.formulas import LAMBDA, A, column
 from closedform.derivation.parametric.formulas import (
     as_given,
     compared,
     polynomial_formula,
 )
-from closedform.derivation.result_steps import exact_number
+from closedform.derivation.parametric.numbers_step import value_shown
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.model.parameters import assumed
 from closedform.model.parametric import Definition, Parameter, ParametricOutput
@@ -25,7 +24,7 @@ from closedform.notation.expression import (
     product,
 )
 from closedform.notation.rational_formula import rational_formula, weighted_rational
-from closedform.notation.terms import opened, sum_of, surd_formula
+from closedform.notation.terms import opened, sum_of
 from closedform.response.parametric.response import ParametricResponse
 
 __all__ = [
@@ -153,14 +152,8 @@ def _row(field: ParameterField, parameter: Parameter) -> dict[str, object]:
         "meaning": parameter.meaning,
         "unit": parameter.unit,
         "assumption": "real" if found is None else compared(field, found[1], "condition"),
-        "value": None if parameter.value is None else _value(parameter.value),
+        "value": None if parameter.value is None else value_shown(parameter.value),
     }
-
-
-def _value(value: SurdSum) -> str | Expression:
-    """A decimal as text, and anything else as a formula."""
-    text = exact_number(value)
-    return text if text.strip("-0123456789.") == "" else surd_formula(value)
 
 
 def _told(definition: Definition) -> dict[str, object]:

@@ -9,7 +9,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
-from typing import Any
+from typing import Any, Protocol
 
 from flint import acb, acb_mat, acb_poly, arb, arb_mat, ctx
 
@@ -31,7 +31,6 @@ from closedform.notation.expression import (
     names_in,
 )
 from closedform.response.parametric.case import Case
-from closedform.response.parametric.points import Point
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.values import trial_times
 
@@ -112,6 +111,13 @@ def _formula(side: Side) -> Expression:
     return side
 
 
+class Place(Protocol):
+    """Where the parameters have values: a sampled point, or the values of the user."""
+
+    def balls(self) -> dict[str, arb]:
+        """Return a ball for every parameter at FLINT's current precision."""
+
+
 @dataclass(frozen=True)
 class Ground:
     """One case at one point, at FLINT's current precision.
@@ -121,7 +127,7 @@ class Ground:
 
     response: ParametricResponse
     case: Case
-    point: Point
+    point: Place
     definitions: tuple[Defined, ...]
 
     def afresh(self) -> Ground:

@@ -10,6 +10,7 @@ Source:  F. Johansson, Arb: efficient arbitrary-precision midpoint-radius interv
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Mapping, Sequence
+from functools import partial
 from typing import Any
 
 from flint import ctx
@@ -22,6 +23,7 @@ from closedform.derivation.parametric.proof.ground import (
     defined_in,
     said_in,
 )
+from closedform.derivation.parametric.proof.numbers import Given, number_findings
 from closedform.derivation.proof.evaluation import expressions_in
 from closedform.derivation.proof.finding import (
     Comparison,
@@ -43,6 +45,8 @@ _FIRST_BITS = 320
 _MOST_BITS = 1 << 14
 
 _Prover = Callable[[Ground, Said], Iterator[Finding]]
+_Finder = Callable[[Ground], Iterator[Finding]]
+_Trial = tuple[Ground, _Finder]
 
 
 def _within(ground: Ground, said: Said) -> Iterator[Finding]:
@@ -99,6 +103,8 @@ _STATEMENTS: dict[str, _Prover] = {
     "functions": _within,
     "left out": _within,
     "contradicted": _within,
+    "given value": _within,
+    "in numbers": _within,
 }
 """What proves each statement, by what it says."""
 
@@ -128,11 +134,14 @@ def prove_case_statements(response: ParametricResponse, steps: Sequence[Step]) -
     definitions = tuple(defined_in(steps, count))
     for fault in _undefined(response, said, definitions):
         raise StatementRefutedError(response.model.name, fault.place, fault.reason)
-    grounds = _grounds(response, definitions)
+    trials = [
+        *_at_points(response, steps, said, definitions),
+        *_at_values(response, steps, definitions),
+    ]
     bits = _FIRST_BITS
     while True:
         with ctx.workprec(bits):
-            open_ones = [w for g in grounds for w in _wide(g.afresh(), steps, said)]
+            open_ones = [w for ground, find in trials for w in _wide(ground.afresh(), find)]
         if not open_ones:
             break
         if bits >= _MOST_BITS:
@@ -141,23 +150,39 @@ def prove_case_statements(response: ParametricResponse, steps: Sequence[Step]) -
     return Check(
         "statements of the derivation",
         "enclosed",
-        f"{len(said)} statements were evaluated from what is printed, each at points of every "
-        f"case that it is made for ({len(grounds)} in all), names by their definitions in print; "
-        "they agree with the model and the matrix exponential of ball arithmetic",
+        f"{len(said)} statements were evaluated from what is printed, at {len(trials)} points of "
+        "the cases they are made for; they agree with the model and the matrix exponential of "
+        "ball arithmetic",
     )
 
 
-def _grounds(response: ParametricResponse, definitions: tuple[Defined, ...]) -> list[Ground]:
-    """The points of all cases.  Raises UnprovedError if a case has none."""
-    found = []
+def _at_points(
+    response: ParametricResponse,
+    steps: Sequence[Step],
+    said: Sequence[Said],
+    definitions: tuple[Defined, ...],
+) -> Iterator[_Trial]:
+    """All statements at points of all cases.  Raises UnprovedError if a case has none."""
     for case in response.cases:
         points = case_points(response.model.field, case, POINTS, seed=2)
         if not points:
             how = f"no point of case {case.number + 1} was found to put in"
             check = Check("statements of the derivation", "not attempted", how)
             raise UnprovedError(response.model.name, (check,))
-        found += [Ground(response, case, point, definitions) for point in points]
-    return found
+        for point in points:
+            ground = Ground(response, case, point, definitions)
+            yield ground, lambda g: _findings(g, steps, said)
+
+
+def _at_values(
+    response: ParametricResponse, steps: Sequence[Step], definitions: tuple[Defined, ...]
+) -> Iterator[_Trial]:
+    """What is said in numbers, at the values that the user gives."""
+    for step in steps:
+        for row in _rows(step, "sets") if step.kind == "numbers" else ():
+            case = response.cases[row["case"]]
+            ground = Ground(response, case, Given(row["values"]), definitions)
+            yield ground, partial(number_findings, step=step, row=row)
 
 
 def _refuse(response: ParametricResponse, wide: Sequence[Comparison], bits: int) -> None:
@@ -171,7 +196,7 @@ def _refuse(response: ParametricResponse, wide: Sequence[Comparison], bits: int)
     raise UnprovedError(name, tuple(Check(place, "not attempted", how) for place in places))
 
 
-def _wide(ground: Ground, steps: Sequence[Step], said: Sequence[Said]) -> Iterator[Comparison]:
+def _wide(ground: Ground, find: _Finder) -> Iterator[Comparison]:
     """Yield the comparisons that this precision does not settle.
 
     Raises StatementRefutedError at the first thing that certainly is wrong.
@@ -181,7 +206,7 @@ def _wide(ground: Ground, steps: Sequence[Step], said: Sequence[Said]) -> Iterat
         lost = next(n for n, value in ground.names.items() if not value.is_finite())
         yield undecided(f"{lost} of case {ground.case.number + 1}")
         return
-    for finding in _findings(ground, steps, said):
+    for finding in find(ground):
         if isinstance(finding, Fault):
             where = f"{finding.place} (case {ground.case.number + 1} at {ground.point})"
             raise StatementRefutedError(name, where, finding.reason)
