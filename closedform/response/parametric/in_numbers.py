@@ -6,7 +6,10 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 
+from flint import ctx
+
 from closedform.algebra.enclosure import exact_decimal
+from closedform.notation.evaluation import enclose
 from closedform.notation.expression import (
     ONE,
     ZERO,
@@ -23,10 +26,22 @@ from closedform.notation.expression import (
     number,
     product,
 )
-from closedform.notation.terms import negated, opened, sum_of
+from closedform.notation.terms import opened, sum_of, surd_formula
 from closedform.response.parametric.known import Known
 
 __all__ = ["InNumbers", "decimal_formula", "in_numbers"]
+
+
+HALF = Number(Fraction(1, 2))
+CLOSE = 10
+"""Two rates are close if their mean is so many times their distance from it."""
+
+
+@dataclass(frozen=True)
+class _Exponential:
+    """e^(rate t), the rate a formula without the time."""
+
+    rate: Expression
 
 
 @dataclass(frozen=True)
@@ -36,6 +51,18 @@ class _Part:
     weight: Expression
     functions: tuple[_Function, ...] = ()
 
+    def times(self, weight: Expression) -> _Part:
+        """Return the part with one more factor in its weight."""
+        return _Part(product([weight, self.weight]), self.functions)
+
+    @property
+    def terms(self) -> tuple[_Part, ...]:
+        """The terms of a part that is a weight before a sum; else the part itself."""
+        match self.functions:
+            case (_Terms(parts),):
+                return tuple(part.times(self.weight) for part in parts)
+        return (self,)
+
 
 @dataclass(frozen=True)
 class _Terms:
@@ -43,8 +70,13 @@ class _Terms:
 
     parts: tuple[_Part, ...]
 
+    @property
+    def has_exponential(self) -> bool:
+        """Whether some term has one as its factor."""
+        return any(isinstance(f, _Exponential) for part in self.parts for f in part.functions)
 
-_Function = Expression | _Terms
+
+_Function = Expression | _Exponential | _Terms
 
 
 @dataclass(frozen=True)
@@ -61,13 +93,20 @@ class InNumbers:
 def in_numbers(formula: Expression, known: Known, time: str, digits: int) -> InNumbers:
     """Return a formula of a case with the values put in and the arithmetic done.
 
+    cosh and sinh become exponentials, for -delta + kappa may have no digit left where both
+    are rounded; they stay where kappa is small, and the two rates would read alike.
+
     Every number is rational and exact, if its decimal or its numerator and denominator have
     up to `digits` digits, and else correctly rounded to them.
 
     Raises UnsettledError for a number that is 0 without this being known exactly.
     """
     writer = _Writer(known, time, digits)
-    written = writer.written(writer.parted(formula))
+    part = writer.parted(formula)
+    if writer.has_close_rates:
+        writer = _Writer(known, time, digits, splits=False)
+        part = writer.parted(formula)
+    written = writer.written(part)
     return InNumbers(written, bool(writer.rounded & names_in(written)))
 
 
@@ -88,9 +127,10 @@ def _split(text: str) -> tuple[bool, str, str]:
 class _Writer:
     """Takes a formula apart into weights without the time and the functions beside them."""
 
-    def __init__(self, known: Known, time: str, digits: int) -> None:
-        self.known, self.time, self.digits = known, time, digits
+    def __init__(self, known: Known, time: str, digits: int, *, splits: bool = True) -> None:
+        self.known, self.time, self.digits, self.splits = known, time, digits, splits
         self.rounded: set[str] = set()
+        self.has_close_rates = False
 
     def parted(self, formula: Expression) -> _Part:
         """Return weight and functions whose product is the formula.
@@ -101,41 +141,67 @@ class _Writer:
             return _Part(formula)
         match formula:
             case Negation(operand):
-                part = self.parted(operand)
-                return _Part(negated(part.weight), part.functions)
+                return self.parted(operand).times(Negation(ONE))
             case Product(factors):
-                parts = [self.parted(factor) for factor in factors]
-                functions = [function for part in parts for function in part.functions]
-                functions.sort(key=lambda f: not isinstance(f, Name | Power))  # t e^(-t)
-                return _Part(product(part.weight for part in parts), tuple(functions))
-            case Quotient(above, below):
-                return self._quotient(self.parted(above), self.parted(below))
-            case Power(base, exponent):
-                part = self.parted(base)
-                inside = self.written(_Part(ONE, part.functions))
-                raised = (Power(inside, exponent),) if part.functions else ()
-                return _Part(Power(part.weight, exponent), raised)
+                return self._product([self.parted(factor) for factor in factors])
+            case Quotient(above, below) if self.time not in names_in(below):
+                return self.parted(above).times(Quotient(ONE, below))
+            case Call("exp", argument):
+                return self._exponential(argument)
+            case Call("cosh" | "sinh" as name, argument) if self.splits:
+                sign = ONE if name == "cosh" else Negation(ONE)
+                down = self._exponential(Negation(argument)).times(sign)
+                return self._sum([self._exponential(argument).times(HALF), down.times(HALF)])
             case Call(name, argument):
                 inside = self.written(self.parted(argument))
                 if inside == ZERO:
-                    return _Part(ONE if name in ("exp", "cos", "cosh") else ZERO)
+                    return _Part(ONE if name in ("cos", "cosh") else ZERO)
                 return _Part(ONE, (Call(name, inside),))
             case Sum(terms):
                 return self._sum([self.parted(term) for term in terms])
         return _Part(ONE, (formula,))
 
-    def _quotient(self, above: _Part, below: _Part) -> _Part:
-        weight = Quotient(above.weight, below.weight)
-        if not below.functions:
-            return _Part(weight, above.functions)
-        sides = (self.written(_Part(ONE, part.functions)) for part in (above, below))
-        return _Part(weight, (Quotient(*sides),))
+    def _exponential(self, argument: Expression) -> _Part:
+        part = self.parted(argument)
+        if part.functions != (Name(self.time),):
+            return _Part(ONE, (Call("exp", self.written(part)),))
+        return self._growing(part.weight)
+
+    def _growing(self, rate: Expression) -> _Part:
+        """Return e^(rate t), with one way to write a rate that is known exactly."""
+        value = self.known.value(rate)
+        if value is None:
+            return _Part(ONE, (_Exponential(rate),))
+        return _Part(ONE, () if value.is_zero else (_Exponential(surd_formula(value)),))
+
+    def _product(self, parts: Sequence[_Part]) -> _Part:
+        """Multiply; exponentials become one, also with those in the terms of a sum."""
+        weight = product(part.weight for part in parts)
+        functions = [function for part in parts for function in part.functions]
+        rates = [f.rate for f in functions if isinstance(f, _Exponential)]
+        if len(rates) > 1:
+            self.has_close_rates |= self._is_small(rates[1], rates[0])
+            functions = [f for f in functions if not isinstance(f, _Exponential)]
+            functions += self._growing(Sum(tuple(rates))).functions
+        functions.sort(key=lambda f: not isinstance(f, Name | Power))  # t e^(-t)
+        for function in functions:
+            if rates and isinstance(function, _Terms) and function.has_exponential:
+                rest = _Part(weight, tuple(f for f in functions if f is not function))
+                return self._sum([self._product([rest, term]) for term in function.parts])
+        return _Part(weight, tuple(functions))
+
+    def _is_small(self, rate: Expression, beside: Expression) -> bool:
+        """Whether two rates are close that lie around one of this size."""
+        with ctx.workprec(256):  # it decides on the form only
+            balls = self.known.balls()
+            return bool(CLOSE * abs(enclose(rate, balls)) < abs(enclose(beside, balls)))
 
     def _sum(self, parts: Sequence[_Part]) -> _Part:
         """Add up the weights of one function; leave out what is zero."""
         weights: dict[tuple[_Function, ...], list[Expression]] = {}
         for part in parts:
-            weights.setdefault(part.functions, []).append(part.weight)
+            for term in part.terms:
+                weights.setdefault(term.functions, []).append(term.weight)
         standing = []
         for functions, several in weights.items():
             total = several[0] if len(several) == 1 else Sum(tuple(several))
@@ -149,18 +215,22 @@ class _Writer:
     def written(self, part: _Part) -> Expression:
         """Return a part with one number in each of its terms."""
         sums = [f for f in part.functions if isinstance(f, _Terms)]
-        plain_ones = [f for f in part.functions if not isinstance(f, _Terms)]
+        others = [self._function(f) for f in part.functions if not isinstance(f, _Terms)]
         if not sums:
-            return self._weighted(part.weight, product(plain_ones) if plain_ones else None)
-        first, *others = sums
-        terms = [_Part(product([part.weight, t.weight]), t.functions) for t in first.parts]
-        total = sum_of([self.written(term) for term in terms])
+            return self._weighted(part.weight, product(others) if others else None)
+        first, *more = sums
+        total = sum_of([self.written(term.times(part.weight)) for term in first.parts])
         if total == ZERO:
             return ZERO
         size = total.operand if isinstance(total, Negation) else total
-        rest = [self.written(_Part(ONE, (other,))) for other in others]
-        whole = product([*plain_ones, size, *rest])
+        rest = [self.written(_Part(ONE, (other,))) for other in more]
+        whole = product([*others, size, *rest])
         return opened(Negation(whole)) if isinstance(total, Negation) else whole
+
+    def _function(self, function: Expression | _Exponential) -> Expression:
+        if isinstance(function, _Exponential):
+            return Call("exp", self._weighted(function.rate, Name(self.time)))
+        return function
 
     def _weighted(self, weight: Expression, function: Expression | None) -> Expression:
         value = self._number(weight)
