@@ -36,8 +36,8 @@ OTHER_SPELLINGS = {"lamda": "lambda", "omicron": "o"}
 
 IMAGINARY = "@i"
 UP_TO = (
-    (0.42, "i l t iota epsilon"),
-    (0.52, "c e g j o r s z I theta delta xi varsigma varepsilon zeta"),
+    (0.42, "i l t iota epsilon ."),
+    (0.52, "0 1 2 3 4 5 6 7 8 9 c e g j o r s z I theta delta xi varsigma varepsilon zeta"),
     (0.6, "a b d f h k n p q u v x y eta gamma kappa lambda mu nu phi rho varrho tau upsilon"),
     (0.68, "J L S vartheta alpha beta chi pi sigma varphi omega Gamma Xi"),
     (0.76, "T w psi Lambda Sigma Phi Omega Pi"),
