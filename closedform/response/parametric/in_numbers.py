@@ -26,6 +26,7 @@ from closedform.notation.expression import (
     number,
     product,
 )
+from closedform.notation.plain import plain
 from closedform.notation.terms import opened, sum_of, surd_formula
 from closedform.response.parametric.known import Known
 
@@ -159,7 +160,9 @@ class _Writer:
                 return _Part(ONE, (Call(name, inside),))
             case Sum(terms):
                 return self._sum([self.parted(term) for term in terms])
-        return _Part(ONE, (formula,))
+            case Name() | Power(Name(), Number()):
+                return _Part(ONE, (formula,))
+        raise TypeError(f"{plain(formula)} is not made as solutions are")
 
     def _exponential(self, argument: Expression) -> _Part:
         part = self.parted(argument)

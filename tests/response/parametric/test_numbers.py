@@ -11,7 +11,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 import closedform
-from closedform.algebra.enclosure import ball_of, exact_decimal
+from closedform.algebra.enclosure import UnsettledError, ball_of, exact_decimal
 from closedform.algebra.surds import SurdSum
 from closedform.model.evaluation import at_values
 from closedform.model.parametric import ValueSet
@@ -179,6 +179,36 @@ def test_values_outside_of_the_domain_are_refused() -> None:
         caught.value
     )
     assert "m = -1" in str(caught.value)
+
+
+@pytest.mark.parametrize("name", ["m", "k"])
+def test_values_at_a_pole_are_refused_and_not_divided_by(name: str) -> None:
+    response = response_to("damped")
+    values = {n: whole(int(n != name)) for n in response.model.field.parameters}
+    with pytest.raises(ValuesNotCoveredError):
+        numbers_at(response, ValueSet("", tuple(values.items())), digits=DIGITS)
+
+
+def test_digits_that_no_precision_settles_are_an_error() -> None:
+    """The slow rate has no part in this motion, and the instants are those of slow ones."""
+    response = response_to("damped")
+    root = SurdSum.of({249999: Fraction(1)})
+    values = {"m": whole(1), "c": whole(1000), "k": whole(1), "x0": whole(1)}
+    given_values = ValueSet("", (*values.items(), ("v0", whole(-500) - root)))
+    with pytest.raises(UnsettledError):
+        numbers_at(response, given_values, digits=DIGITS)
+    early = numbers_at(response, given_values, digits=DIGITS, times=(whole("1/1000"),))
+    assert early.rows[0][0] == "0.367880"
+    assert texts(early)[0] == "exp(-999.999*t)"
+
+
+@given(st.permutations(["m", "c", "k", "x0", "v0"]))
+def test_the_order_in_which_values_are_given_does_not_matter(order: list[str]) -> None:
+    first = response_to("damped").model.value_sets[0]
+    values = dict(first.values)
+    shuffled = ValueSet(first.label, tuple((name, values[name]) for name in order))
+    found = numbers_at(response_to("damped"), shuffled, digits=DIGITS)
+    assert found == row_of("damped", 1)
 
 
 # --- names and formulas -------------------------------------------------------------------------
