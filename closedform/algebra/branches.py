@@ -202,7 +202,8 @@ def _fate(
             domain = domain.narrowed(Comparison(equation.polynomial, "="))
         else:
             put = {equation.parameter: equation.value}
-            equations = (*(_put_in_equation(field, e, put) for e in equations), equation)
+            earlier = (_put_in_equation(field, e, put) for e in equations)
+            equations = (*(e for e in earlier if e.polynomial), equation)
             domain = domain.substituted(equation.parameter, equation.value)
         contradicted = domain.contradiction()
         if contradicted is not None:

@@ -11,6 +11,7 @@ from collections.abc import Sequence
 from functools import reduce
 from itertools import combinations
 
+from closedform.algebra.coprime import are_coprime, is_squarefree
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import FieldMatrix, Polynomial
 from closedform.algebra.spectrum import polynomial_of_matrix
@@ -202,8 +203,8 @@ _SHARED = "an eigenvalue is a double root of its factor, or a root of two factor
 
 def _share_a_root(polynomials: Sequence[Polynomial]) -> bool:
     """Whether a polynomial is not squarefree, or two of them are not coprime."""
-    squarefree = all(p.degree() == 1 or p.gcd(p.diff()).degree() == 0 for p in polynomials)
-    return not squarefree or any(f.gcd(g).degree() > 0 for f, g in combinations(polynomials, 2))
+    squarefree = all(map(is_squarefree, polynomials))
+    return not squarefree or any(not are_coprime(f, g) for f, g in combinations(polynomials, 2))
 
 
 def _trace(matrix: FieldMatrix) -> object:

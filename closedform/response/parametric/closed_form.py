@@ -84,7 +84,8 @@ def fronted_matrix(
         kept = [[_without_rate(field, terms) for terms in row] for row in kept]
         forms.append((shared[0], _written_rows(field, kept, time)))
     amounts = [taken_apart(term.amount) for term in everything]
-    for front in fronts_of(amounts, few=True):
+    # beyond three states only what all entries share is worth a try: the rest is rarely shorter
+    for front in fronts_of(amounts, few=True, partial=len(kept) <= 3):
         if front != UNIT:
             scale = 1 / field.product_of(front)
             inside = [[_scaled(terms, scale) for terms in row] for row in kept]

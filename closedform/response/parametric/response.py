@@ -35,7 +35,8 @@ class ParametricResponse:
 
     Shapes:  `matrix` is n x n, `initial` n x 1, over the model's field.  `domain` is the
     model's, without the points at which A is not defined.  `cases` follow `branches`, with
-    one case for each way in which the regimes of a branch's factors combine.
+    one case for each way in which the regimes of a branch's factors combine; ways that
+    contradict the domain are left out, and so a branch may have no case.
     """
 
     model: ParametricModel
@@ -133,8 +134,9 @@ def respond_in_cases(model: ParametricModel) -> ParametricResponse:
         first: Case | None = None
         for regimes in product(*ways):
             case = written_case(model, branch, regimes, (state, output), len(cases), first)
-            first = first or case
-            cases.append(case)
+            if case is not None:
+                first = first or case
+                cases.append(case)
     return ParametricResponse(model, domain, matrix, initial, branches, tuple(cases))
 
 

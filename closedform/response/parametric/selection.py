@@ -9,6 +9,9 @@ from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import Regime
+from closedform.notation.expression import ZERO, power_of
+from closedform.notation.rational_formula import rational_formula
+from closedform.notation.terms import sum_of
 from closedform.response.parametric.conditions import (
     WrittenComparison,
     written_comparison,
@@ -20,10 +23,11 @@ __all__ = ["case_conditions"]
 
 def case_conditions(
     domain: ParameterDomain, branch: Branch, regimes: Sequence[Regime]
-) -> tuple[tuple[WrittenComparison, ...], ParameterDomain]:
+) -> tuple[tuple[WrittenComparison, ...], ParameterDomain] | None:
     """Return what selects a case, as printed, and the part of the domain that it selects.
 
-    First the equations of the branch, then what must not vanish, then the regimes.
+    First the equations of the branch, then what must not vanish, then the regimes.  None if
+    these contradict each other: then there is no such case.
     """
     field = domain.field
     written: list[WrittenComparison] = []
@@ -33,23 +37,30 @@ def case_conditions(
             written.append(written_comparison(domain, Comparison(equation.polynomial, "=")))
         else:
             written.append(written_equation(field, equation.parameter, equation.value))
-    apart = [
-        Comparison(_together(field, e.polynomials), "!=")
-        for e in branch.exceptional
-        if e.fate != "excluded"
-    ]
     of_regimes = [c for regime in regimes for c in regime.conditions]
     whole = inside.narrowed(*of_regimes)
-    for comparison in (*apart, *of_regimes):
-        if (whole if comparison in apart else inside).implies(comparison):
+    for exceptional in branch.exceptional:
+        if exceptional.fate == "excluded":
             continue
-        written.append(written_comparison(inside, comparison))
-        inside = inside.narrowed(comparison)
+        polynomials = exceptional.polynomials
+        squares = sum((p**2 for p in polynomials), field.domain.zero)
+        comparison = Comparison(polynomials[0] if len(polynomials) == 1 else squares, "!=")
+        if not whole.implies(comparison):
+            if len(polynomials) == 1:
+                written.append(written_comparison(inside, comparison))
+            else:
+                written.append(_not_all_zero(field, polynomials))
+            inside = inside.narrowed(comparison)
+    for comparison in of_regimes:
+        if not inside.implies(comparison):
+            written.append(written_comparison(inside, comparison))
+            inside = inside.narrowed(comparison)
+    if (branch.equations or of_regimes) and inside.contradiction() is not None:
+        return None
     return tuple(dict.fromkeys(written)), inside
 
 
-def _together(field: ParameterField, polynomials: Sequence[Scalar]) -> Scalar:
-    """An element that vanishes where all the polynomials do: one of them, or a sum of squares."""
-    if len(polynomials) == 1:
-        return polynomials[0]
-    return sum((p**2 for p in polynomials), field.domain.zero)
+def _not_all_zero(field: ParameterField, polynomials: Sequence[Scalar]) -> WrittenComparison:
+    """The sum of the squares is not zero: at least one of the polynomials is not."""
+    squares = [power_of(rational_formula(field, p), 2) for p in polynomials]
+    return WrittenComparison(sum_of(squares), "!=", ZERO)

@@ -62,14 +62,18 @@ def written_case(
     functions: tuple[ExponentialMatrix, ExponentialMatrix | None],
     number: int,
     like: Case | None = None,
-) -> Case:
+) -> Case | None:
     """Return a branch in one regime, with its formulas in their shortest form.
 
     `functions` are x(t) and the outputs.  `like` is a case of the same branch whose
-    abbreviations are taken over, so that the regimes can be read side by side.
+    abbreviations are taken over, so that the regimes can be read side by side.  None if the
+    conditions of the case contradict each other.
     """
     field, n, m = model.field, len(model.states), len(model.outputs)
-    conditions, domain = case_conditions(model.domain, branch, regimes)
+    selected = case_conditions(model.domain, branch, regimes)
+    if selected is None:
+        return None
+    conditions, domain = selected
     letters = Letters(_taken(model))
     modes = modes_of(field, branch.spectrum.factors, regimes, letters)
     shortenings = (*user_shortenings(model, branch), *trade_shortenings(field, modes, letters))

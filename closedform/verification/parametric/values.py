@@ -72,7 +72,7 @@ def _root(field: ParameterField, root: RootDefinition, known: Mapping[str, arb])
 
 def _isolated(polynomial: acb_poly) -> list[acb] | None:
     try:
-        roots: Any = polynomial.roots()
+        roots: Any = polynomial.roots(tol=arb(2) ** (-ctx.prec * 3 // 4))
     except ValueError:  # not told apart at this precision
         return None
     return list(roots)
