@@ -79,7 +79,10 @@ def _opened(term: Expression, room: float) -> list[Box]:
             over = Box(rf"\frac{{1}}{{{lower.latex}}}", lower.width + 0.3, 2)
             if lower.width > room / 2:
                 return [*_in_brackets(above, room), *_after_slash(_in_brackets(below, room))]
-            return _led(over, _in_brackets(above, room))
+            opened = _in_brackets(above, room)
+            if over.width + opened[0].width > room:
+                opened = _in_brackets(above, room - over.width)
+            return _led(over, opened)
         case Call("sqrt", argument):
             inside = _in_brackets(argument, room)
             last = inside[-1]
@@ -102,6 +105,8 @@ def _of_product(whole_product: Product, room: float) -> list[Box]:
     middle = factors[widest]
     if isinstance(middle, Sum | Negation):
         opened = _in_brackets(middle, room)
+        if found and found[0].width + opened[0].width > room:
+            opened = _in_brackets(middle, max(room - found[0].width, room / 2))
         found = _led(found[0], opened) if found else opened
     else:
         opened = _opened(middle, room)

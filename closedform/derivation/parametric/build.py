@@ -40,9 +40,9 @@ def derive_cases(
 ) -> Derivation:
     """Return the derivation of a response with parameters whose records hold.
 
-    `numbers` are the results at the values that the model gives, if it gives any, with `digits`
-    significant digits.  Every statement in it is proved once more as it will be printed, at points of the cases
-    it is made for, and the last check about the whole says so.
+    `numbers` are the results at the values that the model gives, if it gives any, with
+    `digits` significant digits.  Every statement in it is proved once more as it will be
+    printed, at points of the cases it is made for, and the last check about the whole says so.
 
     Raises:  ValueError if the records do not hold: nothing is derived from what is not proved;
              StatementRefutedError if a step states what does not hold;

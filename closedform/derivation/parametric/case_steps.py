@@ -6,7 +6,7 @@ from collections.abc import Iterator
 
 from closedform.algebra.branches import Branch, Exceptional
 from closedform.algebra.domain import Comparison
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.field import Scalar
 from closedform.algebra.sign_argument import ByCondition, Constant
 from closedform.derivation.parametric.formulas import written_comparison_statement
 from closedform.derivation.parametric.reasons import contradiction_of, reason_of
@@ -99,7 +99,7 @@ def _exceptional_row(
         there = _numbers(response, exceptional.branch)
         row["there"] = there
         row["vanishing"] = {
-            "equations": [_equation(field, branch, p) for p in exceptional.polynomials],
+            "equations": [_equation(branch, p) for p in exceptional.polynomials],
             "cases": there,
         }
     elif exceptional.argument is not None:
@@ -114,7 +114,7 @@ def _exceptional_row(
     return row
 
 
-def _equation(field: ParameterField, branch: Branch, polynomial: object) -> Statement:
+def _equation(branch: Branch, polynomial: Scalar) -> Statement:
     written = written_comparison(branch.domain, Comparison(polynomial, "="))
     statement = written_comparison_statement(written, "vanishing")
     if statement.sides[0] == ZERO:

@@ -198,6 +198,23 @@ def _roots(
     return found
 
 
+def _told(rows: Sequence[dict[str, object]]) -> list[dict[str, object]]:
+    """What is said of the names in a sentence: names used in the same cases only together."""
+    groups: list[dict[str, object]] = []
+    for row in rows:
+        words, only, name = row["words"], row["only"], row["name"]
+        last = groups[-1] if groups else None
+        if last is not None and not words and (last["words"], last["only"]) == ("", only):
+            last["names"] = [*_list(last["names"]), name]
+        elif words or only:
+            groups.append({"names": [name], "words": words, "only": only})
+    return groups
+
+
+def _list(item: object) -> list[object]:
+    return list(item) if isinstance(item, list) else [item]
+
+
 def definitions_step(
     response: ParametricResponse, definitions: Definitions, *, branch: int
 ) -> Step | None:
@@ -207,6 +224,7 @@ def definitions_step(
     facts = {
         "formulas": definitions.formulas,
         "roots": definitions.roots,
+        "told": _told(definitions.formulas),
         "all": len(response.cases),
         "branch": branch,
     }

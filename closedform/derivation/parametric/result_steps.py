@@ -78,7 +78,7 @@ def branch_step(response: ParametricResponse, branch: Branch, records: CaseRecor
         "cases": tuple(c.number for c in cases),
         "number": branch.number,
         "numbers": [c.number + 1 for c in cases],
-        "equations": _equations(field, branch, cases),
+        "equations": _equations(cases),
         "repeated": _repeated(field, cases),
         "limit": len(joined) == len(cases) > 0,
     }
@@ -89,9 +89,7 @@ def _of(records: CaseRecords, case: Case) -> tuple[Check, ...]:
     return records.cases[case.number].checks
 
 
-def _equations(
-    field: ParameterField, branch: Branch, cases: Sequence[Case]
-) -> tuple[Statement, ...]:
+def _equations(cases: Sequence[Case]) -> tuple[Statement, ...]:
     """The conditions that all cases of the branch share."""
     if not cases:
         return ()
@@ -103,16 +101,14 @@ def _equations(
 
 def _repeated(field: ParameterField, cases: Sequence[Case]) -> list[dict[str, object]]:
     """The eigenvalues that are repeated, alike in all cases of a branch."""
-    found: list[dict[str, object]] = []
     if len(cases) != 1:
-        return found
-    for eigenvalue in eigenvalues_of(field, cases[0]):
-        if eigenvalue.multiplicity > 1:
-            found.append(
-                {
-                    "value": Statement("zero", (eigenvalue.value,)),
-                    "multiplicity": eigenvalue.multiplicity,
-                    "index": eigenvalue.index,
-                }
-            )
-    return found
+        return []
+    return [
+        {
+            "value": Statement("zero", (e.value,)),
+            "multiplicity": e.multiplicity,
+            "index": e.index,
+        }
+        for e in eigenvalues_of(field, cases[0])
+        if e.multiplicity > 1
+    ]

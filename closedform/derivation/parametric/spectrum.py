@@ -9,6 +9,7 @@ from closedform.algebra.parameter_field import ParameterField
 from closedform.derivation.parametric.formulas import exponential, named_or_written, plus_minus
 from closedform.derivation.step import Side, Symbol
 from closedform.notation.expression import (
+    ONE,
     Call,
     Expression,
     Name,
@@ -42,13 +43,13 @@ class Eigenvalue:
 
 def eigenvalues_of(field: ParameterField, case: Case) -> list[Eigenvalue]:
     """Return the eigenvalues of a case, each or each pair with its multiplicity."""
-    found = []
+    found: list[Eigenvalue] = []
     for mode in case.modes:
         double = mode.regime.kind == "double"
         multiplicity = mode.factor.multiplicity * (2 if double else 1)
         known = case.branch.relation is None and not double
-        for value in values_of(field, case, mode):
-            found.append(Eigenvalue(value, multiplicity, mode.factor.index if known else None))
+        index = mode.factor.index if known else None
+        found += [Eigenvalue(v, multiplicity, index) for v in values_of(field, case, mode)]
     return found
 
 
@@ -68,8 +69,8 @@ def values_of(field: ParameterField, case: Case, mode: Mode) -> Iterator[Side]:
         case "real roots":
             yield from names
         case "squares":
-            for name, sign in zip(names, mode.regime.signs, strict=True):
-                kind = "pair" if sign == "circular" else "real pair"
+            for name, way in zip(names, mode.regime.signs, strict=True):
+                kind = "pair" if way == "circular" else "real pair"
                 yield Symbol(kind, parts=(centre, name))
         case "quartet":
             _, sigma, omega = names
@@ -92,76 +93,86 @@ def real_eigenvalues(field: ParameterField, case: Case, mode: Mode) -> list[Expr
     return [v for v in values_of(field, case, mode) if is_expression(v)]
 
 
+KERNELS = {"circular": ("cos", "sin"), "hyperbolic": ("cosh", "sinh")}
+"""The even and the odd function of a pair of eigenvalues."""
+
+
 def kernels_of(
     field: ParameterField, mode: Mode, time: str
 ) -> tuple[Expression, Expression] | None:
     """Return the even and the odd function of a pair: cos and sin/omega, 1 and t, …"""
     t = Name(time)
     if mode.regime.kind == "double":
-        return power_of(t, 0), t
-    if mode.regime.kind not in {"circular", "hyperbolic"}:
+        return ONE, t
+    if mode.regime.kind not in KERNELS:
         return None
-    even, odd = ("cos", "sin") if mode.regime.kind == "circular" else ("cosh", "sinh")
+    even, odd = KERNELS[mode.regime.kind]
+    argument = _angle(field, mode, time)
     if mode.names:
-        name = Name(mode.names[0])
-        argument = product([name, t])
+        below = [Name(mode.names[0])]
         return Call(even, argument), weighted_rational(
-            field, field.domain.one, [Call(odd, argument)], [name]
+            field, field.domain.one, [Call(odd, argument)], below
         )
-    argument = weighted_rational(field, mode.frequency, [t], [])
-    return Call(even, argument), weighted_rational(
-        field, 1 / mode.frequency, [Call(odd, argument)], []
-    )
+    weight = field.domain.one / mode.frequency
+    return Call(even, argument), weighted_rational(field, weight, [Call(odd, argument)], [])
+
+
+def _angle(field: ParameterField, mode: Mode, time: str) -> Expression:
+    """The frequency of a pair times t."""
+    if mode.names:
+        return product([Name(mode.names[0]), Name(time)])
+    return weighted_rational(field, mode.frequency, [Name(time)], [])
 
 
 def functions_of(field: ParameterField, case: Case, time: str) -> list[Expression]:
     """Return the functions of which the entries of e^(At) are combinations in a case."""
-    found: list[Expression] = []
-    for mode in case.modes:
-        for bare in _functions(field, case, mode, time):
-            for power in range(mode.factor.index):
-                found.append(product([power_of(Name(time), power), bare]))
+    found = [
+        product([power_of(Name(time), power), bare])
+        for mode in case.modes
+        for bare in _functions(field, case, mode, time)
+        for power in range(mode.factor.index)
+    ]
     return list(dict.fromkeys(found))
 
 
 def _functions(field: ParameterField, case: Case, mode: Mode, time: str) -> Iterator[Expression]:
-    t = Name(time)
+    t, kind = Name(time), mode.regime.kind
     front = exponential(field, case, mode.factor.roots.centre, time)
-    names = [Name(name) for name in mode.names]
-    match mode.regime.kind:
+    match kind:
         case "single":
             yield front
-        case "circular" | "hyperbolic":
-            even, odd = ("cos", "sin") if mode.regime.kind == "circular" else ("cosh", "sinh")
-            argument = (
-                product([names[0], t])
-                if names
-                else weighted_rational(field, mode.frequency, [t], [])
-            )
-            yield product([front, Call(even, argument)])
-            yield product([front, Call(odd, argument)])
         case "double":
-            powers = 2 * mode.factor.index
-            for power in range(0, powers, mode.factor.index):
-                yield product([power_of(t, power), front])
-        case "decaying":
-            for name in names:
-                yield Call("exp", Negation(product([name, t])))
-        case "real roots":
-            for name in names:
-                yield Call("exp", product([name, t]))
+            yield front
+            yield product([power_of(t, mode.factor.index), front])
+        case "decaying" | "real roots":
+            for name in mode.names:
+                exponent = product([Name(name), t])
+                yield Call("exp", Negation(exponent) if kind == "decaying" else exponent)
+        case _:
+            if kind == "root and pair":
+                yield Call("exp", product([Name(mode.names[0]), t]))
+            for factors, (even, odd), angle in _oscillations(field, mode, front, time):
+                yield product([*factors, Call(even, angle)])
+                yield product([*factors, Call(odd, angle)])
+
+
+def _oscillations(
+    field: ParameterField, mode: Mode, front: Expression, time: str
+) -> Iterator[tuple[list[Expression], tuple[str, str], Expression]]:
+    """The exponentials, the kernels and the angle of every pair of a mode."""
+    t, names = Name(time), [Name(name) for name in mode.names]
+    match mode.regime.kind:
+        case "circular" | "hyperbolic":
+            yield [front], KERNELS[mode.regime.kind], _angle(field, mode, time)
         case "squares":
             for name, sign in zip(names, mode.regime.signs, strict=True):
-                even, odd = ("cos", "sin") if sign == "circular" else ("cosh", "sinh")
-                yield product([front, Call(even, product([name, t]))])
-                yield product([front, Call(odd, product([name, t]))])
+                yield [front], KERNELS[sign], product([name, t])
         case "quartet":
             _, sigma, omega = names
-            for rate in (product([sigma, t]), Negation(product([sigma, t]))):
-                for kernel in ("cos", "sin"):
-                    yield product([front, Call("exp", rate), Call(kernel, product([omega, t]))])
+            growth = product([sigma, t])
+            for rate in (growth, Negation(growth)):
+                yield [front, Call("exp", rate)], KERNELS["circular"], product([omega, t])
         case "root and pair":
-            root, sigma, omega = names
-            yield Call("exp", product([root, t]))
-            for kernel in ("cos", "sin"):
-                yield product([Call("exp", product([sigma, t])), Call(kernel, product([omega, t]))])
+            _, sigma, omega = names
+            rate = Call("exp", product([sigma, t]))
+            yield [rate], KERNELS["circular"], product([omega, t])

@@ -40,7 +40,7 @@ Value = Any
 """A number or a matrix, as balls."""
 
 
-def resolvent(ground: Ground, said: Said) -> Iterator[Finding]:
+def resolvent(_ground: Ground, said: Said) -> Iterator[Finding]:
     """(s I - A)^(-1) = N(s)/p(s): nothing but this is said."""
     s = Name("s")
     expected = (
@@ -56,7 +56,7 @@ def resolvent(ground: Ground, said: Said) -> Iterator[Finding]:
     yield from whether(said.statement.sides == expected, "resolvent", "it is another equation")
 
 
-def numerator(ground: Ground, said: Said) -> Iterator[Finding]:
+def numerator(_ground: Ground, said: Said) -> Iterator[Finding]:
     """N(s) = adj(s I - A): nothing but this is said."""
     s = Name("s")
     expected = (
@@ -113,7 +113,7 @@ def shared_matrix(ground: Ground, said: Said) -> Iterator[Finding]:
     n = ground.matrix.nrows()
     for side in said.statement.sides[1:]:
         if isinstance(side, Matrix):
-            yield from agreeing("V", ground.matrix_of(side), _expected_shift(ground, said))
+            yield from agreeing("V", ground.matrix_of(side), _expected_shift(ground))
         elif isinstance(side, Symbol) and side.kind == "shifted" and side.argument is not None:
             shift = ball_at(side.argument, ground.names)
             mean = sum((ground.matrix[i, i] for i in range(n)), acb(0)) / n
@@ -122,7 +122,7 @@ def shared_matrix(ground: Ground, said: Said) -> Iterator[Finding]:
             yield from whether(side == Symbol("matrix", letter="A"), "V", "it is another matrix")
 
 
-def _expected_shift(ground: Ground, said: Said) -> acb_mat:
+def _expected_shift(ground: Ground) -> acb_mat:
     n = ground.matrix.nrows()
     mean = sum((ground.matrix[i, i] for i in range(n)), acb(0)) / n
     return ground.matrix - mean * unit(n)

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from itertools import pairwise
 
-from flint import acb
+from flint import acb, arb
 
 from closedform.derivation.formulas import A
 from closedform.derivation.parametric.proof.ground import Ground, Said
@@ -109,7 +110,7 @@ def stated(ground: Ground, said: Said) -> Iterator[Finding]:
 def equation(ground: Ground, said: Said) -> Iterator[Finding]:
     """Both sides are equal."""
     sides = [ball_at(formula_of(side), ground.names) for side in said.statement.sides]
-    for left, right in zip(sides, sides[1:], strict=False):
+    for left, right in pairwise(sides):
         yield ground.vanishing(said.statement.says, left - right)
 
 
@@ -119,11 +120,11 @@ def comparison(ground: Ground, said: Said) -> Iterator[Finding]:
     place = f"{said.statement.says} of case {ground.case.number + 1}"
     for side in sides:
         yield from whether(bool(side.imag.contains(0)), place, "a side is not real")
-    for left, right in zip(sides, sides[1:], strict=False):
+    for left, right in pairwise(sides):
         yield from _compared(ground, place, (left - right).real, said.statement.relation)
 
 
-def _compared(ground: Ground, place: str, gap: object, relation: str) -> Iterator[Finding]:
+def _compared(ground: Ground, place: str, gap: arb, relation: str) -> Iterator[Finding]:
     difference = acb(gap)
     if relation == "=":
         yield ground.vanishing(place, difference)

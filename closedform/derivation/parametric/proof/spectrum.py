@@ -153,9 +153,8 @@ def block_of_square(ground: Ground, said: Said) -> Iterator[Finding]:
 def sum_of_sizes(ground: Ground, said: Said) -> Iterator[Finding]:
     """A diagonal entry and the sizes of the others of its column or row, and its sign."""
     yield from comparison(ground, said)
-    outer = next(
-        (r["structure"] for r in said.step.facts["rows"] if _holds(r["structure"], said.row)), None
-    )  # type: ignore[attr-defined]
+    rows: Any = said.step.facts["rows"]
+    outer = next((r["structure"] for r in rows if _holds(r["structure"], said.row)), None)
     if outer is None:
         yield Fault(said.statement.says, "it belongs to no block")
         return

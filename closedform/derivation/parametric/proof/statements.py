@@ -24,6 +24,7 @@ from closedform.derivation.parametric.proof.ground import (
     said_in,
 )
 from closedform.derivation.parametric.proof.numbers import Given, number_findings
+from closedform.derivation.parametric.proof.provers import VARIABLES, prover_of
 from closedform.derivation.proof.evaluation import expressions_in
 from closedform.derivation.proof.finding import (
     Comparison,
@@ -44,82 +45,8 @@ POINTS = 2
 _FIRST_BITS = 320
 _MOST_BITS = 1 << 14
 
-_Prover = Callable[[Ground, Said], Iterator[Finding]]
 _Finder = Callable[[Ground], Iterator[Finding]]
 _Trial = tuple[Ground, _Finder]
-
-
-def _within(ground: Ground, said: Said) -> Iterator[Finding]:
-    """A definition, proved where it is used."""
-    yield from ()
-
-
-_MODEL: dict[str, _Prover] = {
-    "system": model.system,
-    "matrix": model.matrix,
-    "initial": model.initial,
-    "output": model.output_definition,
-}
-"""What proves the statements of the model's own step."""
-
-_STATEMENTS: dict[str, _Prover] = {
-    "condition": model.comparison,
-    "case condition": model.comparison,
-    "sign": model.comparison,
-    "restated": model.stated,
-    "abbreviation": model.stated,
-    "identity": model.equation,
-    "sum of roots": model.equation,
-    "product of roots": model.equation,
-    "vanishing": model.equation,
-    "definition of a branch": model.equation,
-    "apart": model.none_of_all,
-    "characteristic polynomial": spectrum.polynomial,
-    "branch polynomial": spectrum.polynomial,
-    "eigenvalue": spectrum.eigenvalue,
-    "zero": spectrum.zero,
-    "factor": spectrum.divisor,
-    "named zeros": spectrum.named_zeros,
-    "polynomial in the square": spectrum.square,
-    "product of entries": spectrum.product_of_entries,
-    "block of the square": spectrum.block_of_square,
-    "sum of sizes": spectrum.sum_of_sizes,
-    "branch matrix": model.matrix,
-    "shared form": exponential.expansion,
-    "shared matrix": exponential.shared_matrix,
-    "resolvent": exponential.resolvent,
-    "numerator": exponential.numerator,
-    "adjugate": exponential.adjugate,
-    "residues": exponential.residues,
-    "slope": exponential.slope,
-    "expansion": exponential.expansion,
-    "exp A": exponential.transition,
-    "solution of state": exponential.function,
-    "output": exponential.function,
-    "definition": _within,
-    "substitution": _within,
-    "kernel": _within,
-    "residue matrix": _within,
-    "functions": _within,
-    "left out": _within,
-    "contradicted": _within,
-    "given value": _within,
-    "in numbers": _within,
-}
-"""What proves each statement, by what it says."""
-
-_VARIABLES = {
-    "characteristic polynomial": {"lambda"},
-    "branch polynomial": {"lambda"},
-    "factor": {"lambda"},
-    "substitution": {"lambda", "mu"},
-    "polynomial in the square": {"mu"},
-    "named zeros": {"lambda", "w"},
-    "resolvent": {"s"},
-    "numerator": {"s"},
-    "adjugate": {"s"},
-    "eigenvalue": {"lambda"},
-}
 
 
 def prove_case_statements(response: ParametricResponse, steps: Sequence[Step]) -> Check:
@@ -223,7 +150,7 @@ def _wide(ground: Ground, find: _Finder) -> Iterator[Comparison]:
 def _findings(ground: Ground, steps: Sequence[Step], said: Sequence[Said]) -> Iterator[Finding]:
     case = ground.case.number
     for s in said:
-        prover = _prover(s)
+        prover = prover_of(s)
         if case in s.cases:
             yield from prover(ground, s)
     for step in steps:
@@ -275,18 +202,6 @@ def _may_hold(ground: Ground, said: Said) -> bool:
     return True
 
 
-def _prover(said: Said) -> _Prover:
-    statement = said.statement
-    table = _MODEL if said.step.kind == "model" else _STATEMENTS
-    prover = table.get(statement.says)
-    if prover is None:
-        raise ValueError(f"nothing proves {statement.says!r} of the step {said.step.kind!r}")
-    if statement.relation != "=" and prover is not model.comparison:
-        if prover not in (spectrum.sum_of_sizes, _within):
-            raise ValueError(f"{statement.says!r} is said with {statement.relation!r}")
-    return prover
-
-
 def _undefined(
     response: ParametricResponse, said: Sequence[Said], definitions: Sequence[Defined]
 ) -> Iterator[Fault]:
@@ -301,7 +216,7 @@ def _undefined(
         for s in said:
             if case not in s.cases:
                 continue
-            allowed = known | _VARIABLES.get(s.statement.says, set())
+            allowed = known | VARIABLES.get(s.statement.says, set())
             if s.step.kind == "model":
                 allowed = allowed | {*m.states, *(o.name for o in m.outputs)}
             for side in s.statement.sides:
