@@ -56,13 +56,30 @@ class JordanChain:
 
         A^power Z u = (lambda + N)^power tau(N)^(-1) v_size with N = A - lambda.
         """
-        field, p = self.vectors[0].field, self.factor.p
+        p = self.factor.p
+        return tuple(reversed(series_product(self._shifted(power), self._inverse_tau, p)))
+
+    def scaled_coordinates(self, power: int) -> tuple[Polynomial, tuple[Polynomial, ...]]:
+        """Return (s, c) with s · coordinates(power) = c and s not zero in L.
+
+        For a single vector s is tau, so that nothing is inverted: over a field of rational
+        functions that is most of the work.
+        """
+        if self.size == 1:
+            return self.tau[0], (self._shifted(power)[0],)
+        one = self.vectors[0].field.polynomial([self.vectors[0].field.domain.one])
+        return one, self.coordinates(power)
+
+    def _shifted(self, power: int) -> list[Polynomial]:
+        """The series of (lambda + N)^power in N, cut off at the size."""
+        field = self.vectors[0].field
         lam = field.polynomial([field.domain.one, field.domain.zero])
-        shifted = []
-        for k in range(self.size):
-            weight = field.domain.convert(comb(power, k))
-            shifted.append((lam ** max(power - k, 0)).mul_ground(weight).rem(p))
-        return tuple(reversed(series_product(shifted, self._inverse_tau, p)))
+        return [
+            (lam ** max(power - k, 0))
+            .mul_ground(field.domain.convert(comb(power, k)))
+            .rem(self.factor.p)
+            for k in range(self.size)
+        ]
 
     @cached_property
     def _inverse_tau(self) -> list[Polynomial]:

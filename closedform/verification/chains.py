@@ -79,9 +79,10 @@ def routes_check(response: Solved) -> Check:
         for power in range(chain.size * chain.factor.degree):
             vector = response.jordan.basis[:, column].to_dense()
             column += 1
-            along = [(c * p.diff()).rem(p) for c in chain.coordinates(power)]
+            scale, coordinates = chain.scaled_coordinates(power)
+            along = [(c * p.diff()).rem(p) for c in coordinates]
             for j, residue in enumerate(terms[0].residues):
-                difference = residue.before(vector)
+                difference = residue.before(vector).scaled(scale)
                 for i in range(chain.size - j):
                     difference = difference - chain.vectors[i].scaled(along[i + j])
                 fault = first_nonzero_over_roots(difference)
