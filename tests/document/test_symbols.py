@@ -8,6 +8,11 @@ from closedform.notation.expression import Name, Quotient
 from tests.document.making import T, add, matrix, neg, prod, q, root
 
 S = Symbol
+RESIDUES = (
+    r"\sum_{p(\lambda) = 0} "
+    r"\frac{\boldsymbol{N}(\lambda)}{p'(\lambda)}\,\mathrm{e}^{\lambda s}"
+)
+
 SIDES: list[tuple[Side, str]] = [
     (S("matrix"), r"\boldsymbol{A}"),
     (S("matrix", ("0",), letter="R"), r"\boldsymbol{R}_{0}"),
@@ -63,6 +68,8 @@ SIDES: list[tuple[Side, str]] = [
         (S("shifted", argument=q(-2)), S("vector", letter="v")),
         r"(\boldsymbol{A} + 2\boldsymbol{I})\,\boldsymbol{v}",
     ),
+    (S("adjugate", argument=q("s")), r"\operatorname{adj}(s\boldsymbol{I} - \boldsymbol{A})"),
+    (S("residue sum", argument=q("s")), RESIDUES),
     (matrix((1, 2), (3, "x")), r"\begin{bmatrix} 1 & 2 \\ 3 & x \end{bmatrix}"),
     (prod(2, "x"), "2x"),
 ]  # fmt: skip

@@ -93,7 +93,6 @@ def _exceptional_row(
         },
         "why": [],
         "fully": [],
-        "contradiction": [],
     }
     if exceptional.fate == "branch" and exceptional.branch is not None:
         there = _numbers(response, exceptional.branch)
@@ -109,8 +108,8 @@ def _exceptional_row(
         row["why"] = reason_of(field, argument)
         row["fully"] = reason_of(field, argument, deep=True)
     elif exceptional.contradicted:
-        row["contradiction"] = contradiction_of(field, branch.domain, exceptional.contradicted)
-        row["why"] = row["fully"] = row["contradiction"]
+        row["why"] = contradiction_of(field, branch.domain, exceptional.contradicted)
+        row["fully"] = row["why"]
     return row
 
 

@@ -10,6 +10,7 @@ from closedform.derivation.result_steps import exact_number
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.notation.expression import Expression, Name
 from closedform.notation.terms import surd_formula
+from closedform.response.parametric.in_numbers import decimal_formula
 from closedform.response.parametric.numbers import NumbersAt
 from closedform.response.parametric.response import ParametricResponse
 from closedform.response.response import LARGEST_WRITTEN_OUT
@@ -62,7 +63,7 @@ def _set(
         "values": numbers.values,
         "conditions": case_conditions_of(response.cases[numbers.case]),
         "given": [
-            Statement("given value", (Name(name), surd_formula(value)))
+            Statement("given value", (Name(name), _value_formula(value)))
             for (name, value), (_, before) in zip(numbers.values, first.values, strict=True)
             if numbers is first or value != before
         ],
@@ -83,6 +84,11 @@ def _set(
             for time, row in zip(numbers.times, numbers.rows, strict=True)
         ],
     }
+
+
+def _value_formula(value: SurdSum) -> Expression:
+    shown = value_shown(value)
+    return decimal_formula(shown) if isinstance(shown, str) else shown
 
 
 def _function(name: str, t: Expression) -> Symbol:

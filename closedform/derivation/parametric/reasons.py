@@ -198,22 +198,18 @@ def contradiction_of(
     field: ParameterField, domain: ParameterDomain, contradicted: Sequence[Comparison]
 ) -> Sentence:
     """Return the sentence that conditions cannot hold together."""
-    statements = [compared(field, c, "contradicted") for c in contradicted]
-    known = [s for s, c in zip(statements, contradicted, strict=True) if c in domain.conditions]
-    new = [s for s in statements if s not in known]
-    sentence: Sentence = ["then"]
-    for k, statement in enumerate(new or statements):
-        sentence += ["and"] if k else []
-        sentence.append(statement)
-    if new and known:
-        sentence.append("would follow, against")
-        for k, statement in enumerate(known):
-            sentence += ["and"] if k else []
-            sentence.append(statement)
-    else:
-        sentence.append(
-            "would follow, which cannot be"
-            if len(statements) < 2
-            else "would follow, which cannot hold together"
-        )
+    known = [compared(field, c, "condition") for c in contradicted if c in domain.conditions]
+    new = [compared(field, c, "contradicted") for c in contradicted if c not in domain.conditions]
+    if not new:
+        raise ValueError("conditions of a branch contradict each other")
+    sentence: Sentence = ["then", *_joined(new), "would follow"]
+    if known:
+        return [*sentence, ", against", *_joined(known)]
+    return [*sentence, ", which cannot be"]
+
+
+def _joined(statements: Sequence[Statement]) -> Sentence:
+    sentence: Sentence = []
+    for k, statement in enumerate(statements):
+        sentence += ["and", statement] if k else [statement]
     return sentence

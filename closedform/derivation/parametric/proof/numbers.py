@@ -15,6 +15,7 @@ from closedform.derivation.parametric.proof.model import comparison, formula_of
 from closedform.derivation.proof.evaluation import ball_at, exact_at
 from closedform.derivation.proof.finding import (
     Comparison,
+    Fault,
     Finding,
     decimal_of,
     number_in,
@@ -47,12 +48,15 @@ def number_findings(ground: Ground, step: Step, row: Mapping[str, Any]) -> Itera
     for statement in row["conditions"]:
         yield from comparison(ground, Said(step, row, statement, (ground.case.number,)))
     for statement in row["given"]:
-        name, formula = statement.sides
-        printed = ball_at(formula_of(formula), {})
+        name, formula = statement.sides[0], formula_of(statement.sides[1])
+        printed = ball_at(formula, {text: acb(number_in(text)) for text in names_in(formula)})
         yield Comparison("value given", printed, acb(ground.point.balls()[name.text]))
     for quantity in row["quantities"]:
         name = quantity["name"].text
         place = f"{name} in numbers"
+        if name not in ground.names:
+            yield Fault(place, f"case {ground.case.number + 1} has no such name")
+            return
         yield decimal_of(place, quantity["decimal"], acb(ground.names[name]), digits)
     defined = [q["name"].text for q in row["quantities"]]
     yield from whether(len(set(defined)) == len(defined), "numbers", "a name is given twice")
@@ -107,11 +111,13 @@ def _formulas(ground: Ground, row: Mapping[str, Any], digits: int) -> Iterator[F
 
 def _table(ground: Ground, step: Step, row: Mapping[str, Any], digits: int) -> Iterator[Finding]:
     header: Any = step.facts["header"]
-    names = [side.letter for side in header[1:]]
+    names = [side.letter for side in header[1:] if isinstance(side, Symbol)]
     model = ground.response.model
     known = {*model.states, *(o.name for o in model.outputs)}
-    head = header[0] == Name(model.time) and set(names) <= known and len(set(names)) == len(names)
-    yield from whether(head, "table of values", "its head names something else")
+    head = header[0] == Name(model.time) and set(names) <= known
+    if not head or len(set(names)) != len(header) - 1:
+        yield Fault("table of values", "its head names something else")
+        return
     for text, *values in row["rows"]:
         exact = exact_at(formula_of(read_formula(text, names=frozenset())), {})
         expected, size = _expected(ground, acb(ball_of(exact)))

@@ -60,7 +60,7 @@ _STATEMENTS: dict[str, Prover] = {
     "exp A": exponential.transition,
     "solution of state": exponential.function,
     "output": exponential.function,
-    "definition": _within,
+    "definition": spectrum.definition,
     "substitution": _within,
     "kernel": _within,
     "residue matrix": _within,

@@ -19,10 +19,12 @@ from closedform.derivation.proof.finding import (
     whether,
 )
 from closedform.derivation.step import Side, Symbol
+from closedform.notation.expression import ZERO, Name
 
 __all__ = [
     "block_of_square",
     "case_row",
+    "definition",
     "divisor",
     "eigenvalue",
     "named_zeros",
@@ -73,8 +75,13 @@ def _are_zeros(ground: Ground, place: str, side: Side) -> Iterator[Finding]:
 
 def divisor(ground: Ground, said: Said) -> Iterator[Finding]:
     """A polynomial = 0 in lambda that divides the characteristic polynomial."""
+    yield from _equals_zero(said)
     factor = coefficients_at(formula_of(said.statement.sides[0]), "lambda", ground.names)
     yield from _divides(ground, factor, said.statement.says)
+
+
+def _equals_zero(said: Said) -> Iterator[Finding]:
+    yield from whether(said.statement.sides[1:] == (ZERO,), said.statement.says, "it is not zero")
 
 
 def _divides(ground: Ground, factor: acb_poly, place: str) -> Iterator[Finding]:
@@ -89,8 +96,18 @@ def _divides(ground: Ground, factor: acb_poly, place: str) -> Iterator[Finding]:
         yield ground.vanishing(place, value)
 
 
+def definition(ground: Ground, said: Said) -> Iterator[Finding]:
+    """A name for a real number; which one is proved where the name is used."""
+    name = said.statement.sides[0]
+    if not isinstance(name, Name):
+        raise TypeError(f"{name} is no name")
+    value = acb(ground.names[name.text])
+    yield from whether(bool(value.imag.contains(0)), name.text, "it is not real")
+
+
 def named_zeros(ground: Ground, said: Said) -> Iterator[Finding]:
     """A polynomial whose zeros go by names: these exist, and are told apart."""
+    yield from _equals_zero(said)
     for name in said.row["names"]:
         if not ground.names[name.text].is_finite():
             yield undecided(f"{name.text} of case {ground.case.number + 1}")
@@ -104,6 +121,7 @@ def named_zeros(ground: Ground, said: Said) -> Iterator[Finding]:
 def square(ground: Ground, said: Said) -> Iterator[Finding]:
     """q(mu) with mu as substituted is the factor that is printed with it."""
     row = said.row
+    yield from _equals_zero(said)
     for z in _ELSEWHERE:
         names = ground.names | {"lambda": z}
         mu = ball_at(formula_of(row["substitution"].sides[1]), names)

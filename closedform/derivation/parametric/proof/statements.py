@@ -32,9 +32,10 @@ from closedform.derivation.proof.finding import (
     Finding,
     StatementRefutedError,
     undecided,
+    whether,
 )
 from closedform.derivation.step import Step
-from closedform.notation.expression import names_in
+from closedform.notation.expression import ZERO, names_in
 from closedform.response.parametric.points import case_points
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.record import Check, UnprovedError
@@ -185,13 +186,16 @@ def _exceptional_row(ground: Ground, step: Step, row: Mapping[str, Any]) -> Iter
     What is said to contradict itself does not hold at its points either.
     """
     equations = row["vanishing"]["equations"]
-    contradicted = [s for s in row["contradiction"] if getattr(s, "says", "") == "contradicted"]
+    if row["fate"] != "branch":
+        same = [s.sides for s in equations] == [(p, ZERO) for p in row["apart"].sides]
+        yield from whether(same, "equation of a branch", "it is of another expression")
     if all(_may_hold(ground, Said(step, row, s, row["cases"])) for s in equations):
         yield undecided("equation of a branch")
-    if contradicted and all(
-        _may_hold(ground, Said(step, row, s, row["cases"])) for s in contradicted
-    ):
-        yield undecided("conditions that contradict each other")
+    for sentence in (row["why"], row["fully"]):
+        contradicted = [s for s in sentence if getattr(s, "says", "") == "contradicted"]
+        held = [_may_hold(ground, Said(step, row, s, row["cases"])) for s in contradicted]
+        if held and all(held):
+            yield undecided("conditions that contradict each other")
 
 
 def _may_hold(ground: Ground, said: Said) -> bool:
