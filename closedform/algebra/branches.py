@@ -13,7 +13,7 @@ listed as not covered.
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal
 
 from closedform.algebra.domain import Comparison, ParameterDomain, SignArgument
@@ -26,6 +26,7 @@ from closedform.algebra.parametric_spectrum import parametric_spectrum, spectrum
 from closedform.algebra.spectrum import Spectrum
 
 __all__ = [
+    "MOST_AT_ONCE",
     "MOST_BRANCHES",
     "Branch",
     "Equation",
@@ -33,10 +34,14 @@ __all__ = [
     "case_tree",
     "linear_solution",
     "put_in",
+    "uncovered",
 ]
 
 MOST_BRANCHES = 16
 """Branches that are solved, the generic one among them: more would be no use in print."""
+MOST_AT_ONCE = 8
+"""Equations that lead out of the generic branch.  Where there are more, the branches of which
+each is a part are too many, and none of them is solved."""
 
 
 @dataclass(frozen=True)
@@ -100,7 +105,6 @@ class _Start:
 
     equations: tuple[Equation, ...]
     domain: ParameterDomain
-    parent: Spectrum | None = None
 
 
 def case_tree(
@@ -112,30 +116,47 @@ def case_tree(
 ) -> tuple[Branch, ...]:
     """Return the branches of x' = A x, the generic one first, breadth first.
 
-    `matrix` is over the field, its denominators do not vanish on the domain.
+    `matrix` is over the field, its denominators do not vanish on the domain.  Equations among
+    the conditions of the domain are put in first.
     Exact:   no number is rounded; every exclusion has an argument.
     """
-    starts = [_Start((), domain)]
+    starts = [_under_conditions(field, domain)]
     known: dict[object, int] = {_key(starts[0]): 0}
     branches: list[Branch] = []
     for number, start in enumerate(starts):  # it grows while it is walked through
         solved = _solved(field, matrix, start, number)
+        fates = [
+            (polynomials, _fate(field, solved, polynomials))
+            for polynomials in exceptional_elements(field, solved.exponential, solved.structures)
+        ]
+        ahead = {_key(fate) for _, fate in fates if isinstance(fate, _Start)}
+        room = most if len(ahead) <= MOST_AT_ONCE else 1
         found = []
-        for polynomials in exceptional_elements(field, solved.exponential, solved.structures):
-            fate = _fate(field, solved, polynomials)
-            if isinstance(fate, _Start):
-                key = _key(fate)
-                if key not in known and len(starts) < most:
-                    known[key] = len(starts)
-                    starts.append(fate)
-                fate = (
-                    Exceptional(polynomials, "branch", branch=known[key])
-                    if key in known
-                    else Exceptional(polynomials, "not covered", reason="budget")
-                )
-            found.append(fate)
-        branches.append(_with_exceptional(solved, tuple(found)))
+        for polynomials, fate in fates:
+            if isinstance(fate, Exceptional):
+                found.append(fate)
+                continue
+            key = _key(fate)
+            if key not in known and len(starts) < room:
+                known[key] = len(starts)
+                starts.append(fate)
+            found.append(
+                Exceptional(polynomials, "branch", branch=known[key])
+                if key in known
+                else Exceptional(polynomials, "not covered", reason="budget")
+            )
+        branches.append(replace(solved, exceptional=tuple(found)))
     return tuple(branches)
+
+
+def _under_conditions(field: ParameterField, domain: ParameterDomain) -> _Start:
+    """The start of the generic branch: the equations of the domain are put in."""
+    start = _Start((), domain)
+    for condition in domain.conditions:
+        if condition.relation == "=":
+            step = _imposed(field, start, condition.element)
+            start = step if isinstance(step, _Start) else start
+    return start
 
 
 def put_in(field: ParameterField, matrix: FieldMatrix, values: dict[str, Scalar]) -> FieldMatrix:
@@ -144,19 +165,6 @@ def put_in(field: ParameterField, matrix: FieldMatrix, values: dict[str, Scalar]
         return matrix
     rows = matrix.to_list()
     return field.matrix([[field.substituted(e, values) for e in row] for row in rows])
-
-
-def _with_exceptional(branch: Branch, found: tuple[Exceptional, ...]) -> Branch:
-    return Branch(
-        branch.number,
-        branch.equations,
-        branch.domain,
-        branch.matrix,
-        branch.spectrum,
-        branch.exponential,
-        branch.structures,
-        found,
-    )
 
 
 def _solved(field: ParameterField, matrix: FieldMatrix, start: _Start, number: int) -> Branch:
@@ -182,33 +190,48 @@ def _fate(
         argument = branch.domain.sign_of(polynomial)
         if argument.never_zero:
             return Exceptional(polynomials, "excluded", argument)
-    domain, equations = branch.domain, branch.equations
+    start = _Start(branch.equations, branch.domain)
     for polynomial in polynomials:
-        values = {e.parameter: e.value for e in equations if e.parameter is not None}
-        left = field.substituted(polynomial, values)
-        if not left:
-            continue
-        factors = [field.of_polynomial(f) for f, e in field.factored(left).factors if e > 0]
-        open_ones = [f for f in factors if not domain.sign_of(f).never_zero]
-        if not open_ones:
-            return Exceptional(polynomials, "excluded", domain.sign_of(left))
-        if len(open_ones) > 1:
-            return Exceptional(polynomials, "not covered", reason="several equations")
-        equation = _equation(field, open_ones[0], domain)
-        if equation.parameter is None or equation.value is None:
-            if any(e.parameter is None for e in equations) or len(polynomials) > 1:
-                return Exceptional(polynomials, "not covered", reason="two relations")
-            equations = (*equations, equation)
-            domain = domain.narrowed(Comparison(equation.polynomial, "="))
-        else:
-            put = {equation.parameter: equation.value}
-            earlier = (_put_in_equation(field, e, put) for e in equations)
-            equations = (*(e for e in earlier if e.polynomial), equation)
-            domain = domain.substituted(equation.parameter, equation.value)
-        contradicted = domain.contradiction()
+        step = _imposed(field, start, polynomial)
+        if isinstance(step, SignArgument):
+            return Exceptional(polynomials, "excluded", step)
+        if isinstance(step, str):
+            return Exceptional(polynomials, "not covered", reason=step)
+        contradicted = step.domain.contradiction() if step is not start else None
         if contradicted is not None:
             return Exceptional(polynomials, "excluded", contradicted=contradicted)
-    return _Start(equations, domain)
+        start = step
+    return start
+
+
+def _imposed(
+    field: ParameterField, start: _Start, polynomial: Scalar
+) -> _Start | SignArgument | str:
+    """Return a start with one equation more; why the domain excludes it; or why it is not solved.
+
+    An equation is solved for a parameter, or kept as it is: one of these at the most.
+    """
+    domain = start.domain
+    values = {e.parameter: e.value for e in start.equations if e.parameter is not None}
+    left = field.substituted(polynomial, values)
+    if not left:
+        return start
+    factors = [field.of_polynomial(f) for f, e in field.factored(left).factors if e > 0]
+    open_ones = [f for f in factors if not domain.sign_of(f).never_zero]
+    if not open_ones:
+        return domain.sign_of(left)
+    if len(open_ones) > 1:
+        return "several equations"
+    equation = _equation(field, open_ones[0], domain)
+    if equation.parameter is None or equation.value is None:
+        if any(e.parameter is None for e in start.equations):
+            return "two relations"
+        narrowed = domain.narrowed(Comparison(equation.polynomial, "="))
+        return _Start((*start.equations, equation), narrowed)
+    put = {equation.parameter: equation.value}
+    earlier = (_put_in_equation(field, e, put) for e in start.equations)
+    equations = (*(e for e in earlier if e.polynomial), equation)
+    return _Start(equations, domain.substituted(equation.parameter, equation.value))
 
 
 def _put_in_equation(field: ParameterField, equation: Equation, put: dict[str, Scalar]) -> Equation:
@@ -253,7 +276,7 @@ def _key(start: _Start) -> object:
 
 
 def uncovered(branches: tuple[Branch, ...]) -> Iterator[tuple[Branch, Exceptional]]:
-    """Yield what no branch covers."""
+    """Yield what no branch covers, with the branch that it belongs to."""
     for branch in branches:
         for exceptional in branch.exceptional:
             if exceptional.fate == "not covered":

@@ -33,6 +33,8 @@ def case_conditions(
     written: list[WrittenComparison] = []
     inside = branch.domain
     for equation in branch.equations:
+        if domain.implies(Comparison(equation.polynomial, "=")):
+            continue
         if equation.parameter is None or equation.value is None:
             written.append(written_comparison(domain, Comparison(equation.polynomial, "=")))
         else:
