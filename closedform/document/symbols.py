@@ -22,6 +22,7 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     resolvent                  letter [A] argument [s]             (s I - A)^(-1)
     adjugate                   letter [A] argument [s]             adj(s I - A)
     residue sum                letter [N] argument [t]             sum of N(l) e^(l t)/p'(l)
+                               parts: the variable [lambda]
     shifted                    letter [A] argument, order (power)  A - lambda_1 I,  (A + 2I)^2
     entry                      parts: one side; indices            (e^(At))_12
     pair                       parts: real part a, frequency w     a +- i w
@@ -184,13 +185,18 @@ def _adjugate(symbol: Symbol) -> Box:
 
 
 def _residue_sum(symbol: Symbol) -> Box:
-    t = formula(symbol.argument or Name("t"), Style.SCRIPT)
-    above = joined(_bold(symbol, "N"), plain(r"(\lambda)", 1.4))
+    variable = symbol.parts[0] if symbol.parts else Name("lambda")
+    if not isinstance(variable, Name):
+        raise TypeError(f"{variable} is no variable")
+    root = formula(variable)
+    exponent = formula(Product((variable, symbol.argument or Name("t"))), Style.SCRIPT)
+    value = bracketed(root)
+    above = joined(_bold(symbol, "N"), value)
     latex = (
-        rf"\sum_{{p(\lambda) = 0}} \frac{{{above.latex}}}{{p'(\lambda)}}\,"
-        rf"\mathrm{{e}}^{{\lambda {t.latex}}}"
+        rf"\sum_{{p{value.latex} = 0}} \frac{{{above.latex}}}{{p'{value.latex}}}\,"
+        rf"\mathrm{{e}}^{{{exponent.latex}}}"
     )
-    return Box(latex, 3.0 + above.width + 1.2 + t.width, 3)
+    return Box(latex, 3.0 + above.width + 0.7 + exponent.width, 3)
 
 
 def _shifted(symbol: Symbol) -> Box:

@@ -300,7 +300,7 @@ FAULTS: list[tuple[Any, str, str, Fault]] = [
     (abbreviations, "polynomial_formula", "named quartic", doubled),
     (result_steps, "sampled", "mixed", table_changed),
     (result_steps, "sampled", "named cubic", table_changed),
-    (result_steps, "_instant", "circular", lambda _: lambda _time: "1/7"),
+    (result_steps, "exact_number", "circular", lambda _: lambda _time: "1/7"),
     (formulas, "weighted", "surd entries", first_side_doubled),
 ]
 

@@ -20,6 +20,7 @@ from closedform.derivation.parametric.result_steps import (
     branch_step,
     case_solution_step,
 )
+from closedform.derivation.parametric.variables import names_of
 from closedform.derivation.parametric.verification_step import verification_step
 from closedform.derivation.result_steps import cautions_step
 from closedform.derivation.step import Derivation, Step
@@ -68,7 +69,7 @@ def _steps(
     yield model_step(response)
     yield parameters_step(response)
     yield characteristic_polynomial_step(response)
-    letters = _letters(response)
+    letters = Letters(names_of(response))
     told: set[object] = set()
     for branch in response.branches:
         cases = [c for c in response.cases if c.branch.number == branch.number]
@@ -96,18 +97,3 @@ def _steps(
     in_numbers = numbers_step(response, numbers, digits)
     if in_numbers is not None:
         yield in_numbers
-
-
-def _letters(response: ParametricResponse) -> Letters:
-    """The letters that print like no name of the model and no named quantity."""
-    model = response.model
-    return Letters(
-        {
-            *model.states,
-            model.time,
-            *(output.name for output in model.outputs),
-            *model.field.parameters,
-            *(d.name for d in (*model.abbreviations, *model.restated)),
-            *(q.name for case in response.cases for q in case.quantities),
-        }
-    )

@@ -5,8 +5,9 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from closedform.derivation.formulas import LAMBDA, ZERO
+from closedform.derivation.formulas import ZERO
 from closedform.derivation.parametric.formulas import polynomial_formula
+from closedform.derivation.parametric.variables import variables_of
 from closedform.derivation.step import Statement
 from closedform.notation.expression import Expression, Name
 from closedform.response.parametric.case import Case, WrittenQuantity
@@ -115,7 +116,8 @@ def _roots(
         degree = len(roots[0].polynomial) - 1
         places = [degree + 1 - r.which if turned else r.which for r in roots]
         polynomial = mode.factor.polynomial if turned else roots[0].polynomial
-        variable = LAMBDA if mode.regime.kind != "squares" else Name("w")
+        variables = variables_of(response)
+        variable = variables.even if mode.regime.kind == "squares" else variables.root
         written = polynomial_formula(field, polynomial, variable)
         rows.append(
             {

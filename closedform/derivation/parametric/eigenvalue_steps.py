@@ -8,12 +8,12 @@ from closedform.algebra.factor_structure import FactorStructure
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.spectrum import Factor
-from closedform.derivation.formulas import LAMBDA, eigenvalue_symbol
 from closedform.derivation.parametric.definitions import Definitions
 from closedform.derivation.parametric.formulas import named_or_written, polynomial_formula
 from closedform.derivation.parametric.reasons import reason_of
 from closedform.derivation.parametric.spectrum import values_of
 from closedform.derivation.parametric.structure_steps import structure_facts
+from closedform.derivation.parametric.variables import Variables, root_symbol, variables_of
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.notation.expression import (
     ONE,
@@ -42,7 +42,8 @@ def eigenvalues_step(response: ParametricResponse, letters: Letters) -> Step:
     branch = response.branches[0]
     cases = [c for c in response.cases if c.branch.number == 0]
     pairs = [f for f in branch.spectrum.factors if f.degree == 2]
-    rows, first = [], 1
+    variables = variables_of(response)
+    rows, first = [], variables.first
     for place, (factor, structure) in enumerate(
         zip(branch.spectrum.factors, branch.structures, strict=True)
     ):
@@ -67,7 +68,7 @@ def _row(
     structure: FactorStructure | None,
     naming: tuple[Letters, int | None],
 ) -> dict[str, object]:
-    field = response.model.field
+    field, variables = response.model.field, variables_of(response)
     factor = cases[0].branch.spectrum.factors[place]
     kinds = list(dict.fromkeys(c.regimes[place].kind for c in cases))
     row: dict[str, object] = {
@@ -80,31 +81,32 @@ def _row(
     }
     if factor.degree == 1:
         value = rational_formula(field, factor.roots.centre)
-        row["statements"] = (Statement("eigenvalue", (eigenvalue_symbol(numbers), value)),)
+        row["statements"] = (Statement("eigenvalue", (root_symbol(variables, numbers), value)),)
     elif factor.degree == 2:
-        row |= _quadratic(field, cases, place, numbers, naming)
+        row |= _quadratic(response, cases, place, numbers, naming)
     else:
-        polynomial = polynomial_formula(field, factor.polynomial, LAMBDA)
+        polynomial = polynomial_formula(field, factor.polynomial, variables.root)
         row["polynomial"] = Statement("factor", (polynomial, ZERO))
         row["whole"] = factor.degree == len(response.model.states)
         if structure is not None:
             row["structure"] = structure_facts(field, structure, len(response.model.states))
-        row |= _roots(field, cases, factor, place, numbers)
+        row |= _roots(field, cases, factor, place, variables)
     return row
 
 
 def _quadratic(
-    field: ParameterField,
+    response: ParametricResponse,
     cases: Sequence[Case],
     place: int,
     numbers: range,
     naming: tuple[Letters, int | None],
 ) -> dict[str, object]:
+    field = response.model.field
     factor, case = cases[0].branch.spectrum.factors[place], cases[0]
     mode = case.modes[place]
     discriminant = factor.roots.discriminant
     argument = case.branch.domain.sign_of(discriminant)
-    symbol = eigenvalue_symbol(numbers)
+    symbol = root_symbol(variables_of(response), numbers)
     if mode.regime.kind == "decaying":
         total, last = (rational_formula(field, factor.p.nth(k)) for k in (1, 0))
         names = [Name(name) for name in mode.names]
@@ -172,7 +174,11 @@ _RELATIONS = {"circular": "<", "double": "=", "hyperbolic": ">"}
 
 
 def _roots(
-    field: ParameterField, cases: Sequence[Case], factor: Factor, place: int, numbers: range
+    field: ParameterField,
+    cases: Sequence[Case],
+    factor: Factor,
+    place: int,
+    variables: Variables,
 ) -> dict[str, object]:
     """Where the roots of a factor of higher degree lie, in each of the cases."""
     regimes = [
@@ -185,12 +191,12 @@ def _roots(
         }
         for c in cases
     ]
-    found: dict[str, object] = {"numbers": eigenvalue_symbol(numbers), "regimes": regimes}
+    found: dict[str, object] = {"regimes": regimes}
     squares = factor.roots.squares
     if factor.roots.form == "even" and squares is not None:
-        mu = Name("mu")
+        mu, root = variables.square, variables.root
         centre = named_or_written(field, cases[0], factor.roots.centre)
-        base: Expression = LAMBDA if centre == ZERO else Sum((LAMBDA, negated(centre)))
+        base: Expression = root if centre == ZERO else Sum((root, negated(centre)))
         found["substitution"] = Statement("substitution", (mu, power_of(base, 2)))
         found["squares"] = Statement(
             "polynomial in the square", (polynomial_formula(field, squares.to_list(), mu), ZERO)

@@ -4,13 +4,14 @@ from __future__ import annotations
 
 from closedform.algebra.branches import Branch, uncovered
 from closedform.algebra.parameter_field import ParameterField
-from closedform.derivation.formulas import LAMBDA, A, column
+from closedform.derivation.formulas import A, column
 from closedform.derivation.parametric.formulas import (
     as_given,
     compared,
     polynomial_formula,
 )
 from closedform.derivation.parametric.numbers_step import value_shown
+from closedform.derivation.parametric.variables import variables_of
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.model.parameters import assumed
 from closedform.model.parametric import Definition, Parameter, ParametricOutput
@@ -167,9 +168,13 @@ def _told(definition: Definition) -> dict[str, object]:
 def characteristic_polynomial_step(response: ParametricResponse) -> Step:
     """det(lambda I - A) over the field of the parameters: in factors, and expanded if short."""
     field, spectrum = response.model.field, response.branches[0].spectrum
-    expanded = polynomial_formula(field, spectrum.characteristic, LAMBDA)
-    factored = factored_polynomial(field, response.branches[0])
-    sides: list[Side] = [Symbol("characteristic polynomial"), Symbol("determinant", letter="A")]
+    root = variables_of(response).root
+    expanded = polynomial_formula(field, spectrum.characteristic, root)
+    factored = factored_polynomial(response, response.branches[0])
+    sides: list[Side] = [
+        Symbol("characteristic polynomial", argument=root),
+        Symbol("determinant", argument=root, letter="A"),
+    ]
     if factored == expanded or operations(expanded) <= SHORT:
         sides.append(expanded)
     if factored != expanded:
@@ -183,9 +188,10 @@ SHORT = 16
 """A polynomial with more operations than this is printed in factors only, if it has some."""
 
 
-def factored_polynomial(field: ParameterField, branch: Branch) -> Expression:
+def factored_polynomial(response: ParametricResponse, branch: Branch) -> Expression:
     """Return the characteristic polynomial of a branch in its factors."""
+    field, root = response.model.field, variables_of(response).root
     return product(
-        power_of(polynomial_formula(field, f.polynomial, LAMBDA), f.multiplicity)
+        power_of(polynomial_formula(field, f.polynomial, root), f.multiplicity)
         for f in branch.spectrum.factors
     )

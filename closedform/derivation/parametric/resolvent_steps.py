@@ -17,6 +17,7 @@ from closedform.derivation.parametric.formulas import (
 )
 from closedform.derivation.parametric.kernels import PAIR, function_of, kernel_letters, kernel_row
 from closedform.derivation.parametric.spectrum import real_eigenvalues
+from closedform.derivation.parametric.variables import variables_of
 from closedform.derivation.step import Matrix, Side, Statement, Step, Symbol
 from closedform.notation.expression import (
     ONE,
@@ -46,12 +47,12 @@ ADJUGATE_UP_TO = 4
 def transform_step(response: ParametricResponse, cases: Sequence[Case], letters: Letters) -> Step:
     """Give the resolvent N(s)/p(s), and its partial fractions as far as they are short."""
     model, case = response.model, cases[0]
-    s, t, n = Name("s"), Name(model.time), len(model.states)
+    s, t, n = variables_of(response).laplace, Name(model.time), len(model.states)
     statements = [
         Statement(
             "resolvent",
             (
-                Symbol("resolvent", letter="A"),
+                Symbol("resolvent", argument=s, letter="A"),
                 Symbol("quotient", parts=(_numerator(s), _denominator(s))),
             ),
         )
@@ -66,7 +67,7 @@ def transform_step(response: ParametricResponse, cases: Sequence[Case], letters:
         "only": len(response.cases) == 1,
     }
     if n <= ADJUGATE_UP_TO:
-        rows = _adjugate(model.field, case.branch.matrix)
+        rows = _adjugate(model.field, case.branch.matrix, s)
         statements.append(Statement("adjugate", (_numerator(s), Matrix(rows))))
     factors = case.branch.spectrum.factors
     simple = all(f.multiplicity == 1 for f in factors)
@@ -84,13 +85,17 @@ def transform_step(response: ParametricResponse, cases: Sequence[Case], letters:
         statements.append(
             Statement(
                 "residues",
-                (Symbol("transition", argument=t), Symbol("residue sum", argument=t, letter="N")),
+                (Symbol("transition", argument=t), _residue_sum(response, t)),
             )
         )
         statements += _slopes(response, case)
     else:
         facts["route"] = "entries"
     return Step("transform", tuple(statements), facts, ("characteristic_polynomial",))
+
+
+def _residue_sum(response: ParametricResponse, t: Name) -> Symbol:
+    return Symbol("residue sum", argument=t, letter="N", parts=(variables_of(response).root,))
 
 
 def _numerator(s: Name) -> Symbol:
@@ -101,7 +106,9 @@ def _denominator(s: Name) -> Symbol:
     return Symbol("characteristic polynomial", letter="p", argument=s)
 
 
-def _adjugate(field: ParameterField, matrix: FieldMatrix) -> tuple[tuple[Expression, ...], ...]:
+def _adjugate(
+    field: ParameterField, matrix: FieldMatrix, s: Name
+) -> tuple[tuple[Expression, ...], ...]:
     """adj(s I - A) = sum of B_k s^(n-1-k), B_k = A B_(k-1) + c_k I; or by minors, if shorter.
 
     Source:  D. K. Faddeev and V. N. Faddeeva, Computational Methods of Linear Algebra, 1963.
@@ -112,20 +119,22 @@ def _adjugate(field: ParameterField, matrix: FieldMatrix) -> tuple[tuple[Express
     for c in coefficients[1:n]:
         parts.append(matrix * parts[-1] + field.identity(n) * c)
     rows = [part.to_list() for part in parts]
-    s = Name("s")
 
     def entry(i: int, k: int) -> Expression:
         polynomial = field.polynomial([part[i][k] for part in rows])
         written = factored_formula(field, polynomial, s)
         if n != 3 or written == ZERO:
             return written
-        return min(written, _minor(field, matrix, k, i), key=operations)
+        return min(written, _minor(field, matrix, (k, i), s), key=operations)
 
     return tuple(tuple(entry(i, k) for k in range(n)) for i in range(n))
 
 
-def _minor(field: ParameterField, matrix: FieldMatrix, row: int, column: int) -> Expression:
+def _minor(
+    field: ParameterField, matrix: FieldMatrix, place: tuple[int, int], s: Name
+) -> Expression:
     """The cofactor of s I - A at an entry, as a difference of two products; n = 3."""
+    row, column = place
     above, below = (i for i in range(3) if i != row)
     left, right = (k for k in range(3) if k != column)
     rows = matrix.to_list()
@@ -134,7 +143,7 @@ def _minor(field: ParameterField, matrix: FieldMatrix, row: int, column: int) ->
         element = rows[i][k]
         if i != k:
             return rational_formula(field, -element)
-        return polynomial_formula(field, [field.domain.one, -element], Name("s"))
+        return polynomial_formula(field, [field.domain.one, -element], s)
 
     sign = -1 if (row + column) % 2 else 1
     return sum_of(

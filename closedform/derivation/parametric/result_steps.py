@@ -11,6 +11,7 @@ from closedform.derivation.parametric.case_steps import case_conditions_of
 from closedform.derivation.parametric.formulas import as_given
 from closedform.derivation.parametric.model_steps import factored_polynomial
 from closedform.derivation.parametric.spectrum import eigenvalues_of
+from closedform.derivation.parametric.variables import variables_of
 from closedform.derivation.step import Statement, Step, Symbol
 from closedform.notation.expression import Name
 from closedform.response.parametric.case import Case
@@ -66,7 +67,10 @@ def branch_step(response: ParametricResponse, branch: Branch, records: CaseRecor
         statements.append(
             Statement(
                 "branch polynomial",
-                (Symbol("characteristic polynomial"), factored_polynomial(field, branch)),
+                (
+                    Symbol("characteristic polynomial", argument=variables_of(response).root),
+                    factored_polynomial(response, branch),
+                ),
             )
         )
     joined = [

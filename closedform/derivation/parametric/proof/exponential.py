@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
+from dataclasses import replace
 from typing import Any
 
 from flint import acb, acb_mat
 
-from closedform.derivation.parametric.proof.ground import Ground, Said, zeros_of
+from closedform.derivation.parametric.proof.ground import Ground, Said, variable_of, zeros_of
 from closedform.derivation.parametric.proof.model import formula_of, matrix_side
 from closedform.derivation.proof.evaluation import ball_at, unit
 from closedform.derivation.proof.finding import (
@@ -42,9 +43,9 @@ Value = Any
 
 def resolvent(_ground: Ground, said: Said) -> Iterator[Finding]:
     """(s I - A)^(-1) = N(s)/p(s): nothing but this is said."""
-    s = Name("s")
+    s = variable_of(said)
     expected = (
-        Symbol("resolvent", letter="A"),
+        Symbol("resolvent", argument=s, letter="A"),
         Symbol(
             "quotient",
             parts=(
@@ -58,7 +59,7 @@ def resolvent(_ground: Ground, said: Said) -> Iterator[Finding]:
 
 def numerator(_ground: Ground, said: Said) -> Iterator[Finding]:
     """N(s) = adj(s I - A): nothing but this is said."""
-    s = Name("s")
+    s = variable_of(said)
     expected = (
         Symbol("matrix", letter="N", argument=s),
         Symbol("adjugate", letter="A", argument=s),
@@ -72,15 +73,21 @@ def adjugate(ground: Ground, said: Said) -> Iterator[Finding]:
     for s in _POINTS:
         shifted = s * unit(n) - ground.matrix
         expected = shifted.solve(unit(n)) * shifted.det()
-        printed = ground.matrix_of(matrix_side(said.statement.sides[-1]), ground.names | {"s": s})
+        names = ground.names | {variable_of(said).text: s}
+        printed = ground.matrix_of(matrix_side(said.statement.sides[-1]), names)
         yield from agreeing("adjugate", printed, expected)
 
 
 def residues(ground: Ground, said: Said) -> Iterator[Finding]:
     """e^(At) as the sum of N(lambda) e^(lambda t)/p'(lambda): all zeros of p are simple."""
     t = Name(ground.response.model.time)
-    expected = (Symbol("transition", argument=t), Symbol("residue sum", argument=t, letter="N"))
-    yield from whether(said.statement.sides == expected, "residues", "it is another equation")
+    left, right = said.statement.sides
+    same = left == Symbol("transition", argument=t) and (
+        isinstance(right, Symbol)
+        and (right.kind, right.argument, right.letter) == ("residue sum", t, "N")
+        and not any(isinstance(p, Name) and p.text in ground.names for p in right.parts)
+    )
+    yield from whether(same, "residues", "it is another equation")
     zeros = zeros_of(ground.characteristic)
     if zeros is None:
         yield undecided("residues")
@@ -89,11 +96,12 @@ def residues(ground: Ground, said: Said) -> Iterator[Finding]:
     if printed is None:
         return
     matrix, slope = matrix_side(printed.sides[-1]), ground.characteristic.derivative()
+    s = variable_of(replace(said, statement=printed)).text
     for time, expected_value in ground.instants:
         total = acb_mat(ground.matrix.nrows(), ground.matrix.ncols())
         for z in zeros:
             weight = (z * time).exp() / slope(z)
-            total = total + weight * ground.matrix_of(matrix, ground.names | {"s": z})
+            total = total + weight * ground.matrix_of(matrix, ground.names | {s: z})
         yield from agreeing("residues", total, expected_value)
 
 

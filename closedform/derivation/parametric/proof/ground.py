@@ -34,7 +34,17 @@ from closedform.response.parametric.case import Case
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.values import trial_times
 
-__all__ = ["Defined", "Ground", "Said", "coefficients_at", "defined_in", "said_in", "zeros_of"]
+__all__ = [
+    "Defined",
+    "Ground",
+    "Said",
+    "coefficients_at",
+    "defined_in",
+    "said_in",
+    "unknown_in",
+    "variable_of",
+    "zeros_of",
+]
 
 
 @dataclass(frozen=True)
@@ -76,6 +86,14 @@ def _numbers(cases: object) -> tuple[int, ...]:
     if not isinstance(cases, tuple):
         raise TypeError(f"{cases} are no numbers of cases")
     return cases
+
+
+def variable_of(said: Said) -> Name:
+    """Return the name in brackets after the symbol on the left.  Raises TypeError for none."""
+    first = said.statement.sides[0]
+    if isinstance(first, Symbol) and isinstance(first.argument, Name):
+        return first.argument
+    raise TypeError(f"{first} has no variable")
 
 
 @dataclass(frozen=True)
@@ -228,6 +246,14 @@ def _degree(formula: Expression, variable: str) -> int:
     return 0
 
 
+def unknown_in(formula: Expression, names: Mapping[str, Any]) -> str:
+    """Return the one name without a value.  Raises ValueError if there is none, or several."""
+    unknown = sorted(names_in(formula) - set(names))
+    if len(unknown) != 1:
+        raise ValueError(f"one variable is expected in {formula}")
+    return unknown[0]
+
+
 def zeros_of(polynomial: acb_poly) -> list[acb] | None:
     """Return the isolated zeros by real part; None where they are not told apart."""
     try:
@@ -241,10 +267,7 @@ def zeros_of(polynomial: acb_poly) -> list[acb] | None:
 
 def _zero(defined: Defined, names: Mapping[str, Any]) -> acb:
     """The real zero at a place, counted by real part; not finite where it is not told apart."""
-    unknown = sorted(names_in(defined.formula) - set(names))
-    if len(unknown) != 1:
-        return acb("nan")
-    zeros = zeros_of(coefficients_at(defined.formula, unknown[0], names))
+    zeros = zeros_of(coefficients_at(defined.formula, unknown_in(defined.formula, names), names))
     for zero in zeros or ():
         if not zero.imag.contains(0):
             continue

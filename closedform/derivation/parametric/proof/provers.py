@@ -76,18 +76,18 @@ _COMPARING: frozenset[Prover] = frozenset({model.comparison, spectrum.sum_of_siz
 """What asks for the relation of a statement; the others prove that sides are equal."""
 
 VARIABLES = {
-    "characteristic polynomial": {"lambda"},
-    "branch polynomial": {"lambda"},
-    "factor": {"lambda"},
-    "substitution": {"lambda", "mu"},
-    "polynomial in the square": {"mu"},
-    "named zeros": {"lambda", "w"},
-    "resolvent": {"s"},
-    "numerator": {"s"},
-    "adjugate": {"s"},
-    "eigenvalue": {"lambda"},
+    "characteristic polynomial": 1,
+    "branch polynomial": 1,
+    "factor": 1,
+    "substitution": 2,
+    "polynomial in the square": 1,
+    "named zeros": 1,
+    "resolvent": 1,
+    "numerator": 1,
+    "adjugate": 1,
+    "residues": 1,
 }
-"""Names that stand for any number in a statement."""
+"""How many names in a statement stand for any number."""
 
 
 def prover_of(said: Said) -> Prover:

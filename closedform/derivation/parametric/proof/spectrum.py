@@ -7,7 +7,13 @@ from typing import Any
 
 from flint import acb, acb_mat, acb_poly
 
-from closedform.derivation.parametric.proof.ground import Ground, Said, coefficients_at
+from closedform.derivation.parametric.proof.ground import (
+    Ground,
+    Said,
+    coefficients_at,
+    unknown_in,
+    variable_of,
+)
 from closedform.derivation.parametric.proof.model import comparison, formula_of, matrix_side
 from closedform.derivation.proof.evaluation import ball_at, unit
 from closedform.derivation.proof.finding import (
@@ -53,7 +59,7 @@ def polynomial(ground: Ground, said: Said) -> Iterator[Finding]:
             yield from whether(side.kind == "determinant", said.statement.says, "no determinant")
             continue
         for z in _ELSEWHERE:
-            printed = ball_at(formula_of(side), ground.names | {"lambda": z})
+            printed = ball_at(formula_of(side), ground.names | {variable_of(said).text: z})
             expected = (z * unit(ground.matrix.nrows()) - ground.matrix).det()
             yield Comparison(said.statement.says, printed, expected)
 
@@ -76,7 +82,9 @@ def _are_zeros(ground: Ground, place: str, side: Side) -> Iterator[Finding]:
 def divisor(ground: Ground, said: Said) -> Iterator[Finding]:
     """A polynomial = 0 in lambda that divides the characteristic polynomial."""
     yield from _equals_zero(said)
-    factor = coefficients_at(formula_of(said.statement.sides[0]), "lambda", ground.names)
+    formula = formula_of(said.statement.sides[0])
+    variable = unknown_in(formula, ground.names)
+    factor = coefficients_at(formula, variable, ground.names)
     yield from _divides(ground, factor, said.statement.says)
 
 
@@ -123,10 +131,12 @@ def square(ground: Ground, said: Said) -> Iterator[Finding]:
     row = said.row
     yield from _equals_zero(said)
     for z in _ELSEWHERE:
-        names = ground.names | {"lambda": z}
-        mu = ball_at(formula_of(row["substitution"].sides[1]), names)
-        printed = ball_at(formula_of(said.statement.sides[0]), names | {"mu": mu})
-        expected = ball_at(formula_of(row["polynomial"].sides[0]), names)
+        square, base = row["substitution"].sides
+        whole = formula_of(row["polynomial"].sides[0])
+        names = ground.names | {unknown_in(whole, ground.names): z}
+        mu = ball_at(formula_of(base), names)
+        printed = ball_at(formula_of(said.statement.sides[0]), ground.names | {square.text: mu})
+        expected = ball_at(whole, names)
         yield Comparison(said.statement.says, printed, expected)
 
 

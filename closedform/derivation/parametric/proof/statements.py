@@ -220,10 +220,15 @@ def _undefined(
         for s in said:
             if case not in s.cases:
                 continue
-            allowed = known | VARIABLES.get(s.statement.says, set())
+            allowed = known
             if s.step.kind == "model":
-                allowed = allowed | {*m.states, *(o.name for o in m.outputs)}
-            for side in s.statement.sides:
-                for formula in expressions_in(side):
-                    for name in sorted(names_in(formula) - allowed):
-                        yield Fault(s.statement.says, f"{name} is used and not defined")
+                allowed = known | {*m.states, *(o.name for o in m.outputs)}
+            used = {
+                name
+                for side in s.statement.sides
+                for formula in expressions_in(side)
+                for name in names_in(formula)
+            }
+            unknown = sorted(used - allowed)
+            if len(unknown) > VARIABLES.get(s.statement.says, 0):
+                yield Fault(s.statement.says, f"{unknown[0]} is used and not defined")
