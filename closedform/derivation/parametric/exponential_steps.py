@@ -109,4 +109,4 @@ def transition_step(response: ParametricResponse, case: Case, *, shared: bool) -
         "generic": case.branch.number == 0,
     }
     depth: Depth = "full" if shared or size > SMALL else "working"
-    return Step("case_transition", (statement,), facts, ("transform",), depth)
+    return Step("case_transition", (statement,), facts, depth=depth)

@@ -51,7 +51,8 @@ def case_solution_step(response: ParametricResponse, case: Case) -> Step:
         "shown": shown,
         "n": len(model.states),
     }
-    return Step("case_solution", tuple(statements), facts, ("cases",), depth="summary")
+    rests_on = ("transition",) if case.branch.number == 0 else ()
+    return Step("case_solution", tuple(statements), facts, rests_on, depth="summary")
 
 
 def branch_step(response: ParametricResponse, branch: Branch, records: CaseRecords) -> Step:
@@ -86,7 +87,7 @@ def branch_step(response: ParametricResponse, branch: Branch, records: CaseRecor
         "repeated": _repeated(field, cases),
         "limit": len(joined) == len(cases) > 0,
     }
-    return Step("branch", tuple(statements), facts, ("cases",))
+    return Step("branch", tuple(statements), facts)
 
 
 def _of(records: CaseRecords, case: Case) -> tuple[Check, ...]:

@@ -105,6 +105,23 @@ MODELS: dict[str, dict[str, Any]] = {
             "a": "real",
         },
     },
+    "letters taken": {
+        "states": ["n1", "n2", "p"],
+        "matrix": [["-lamda_1", 0, 0], ["lamda_1", "-lamda_2", 0], [0, "lamda_2", "-s"]],
+        "initial": ["C", 0, 0],
+        "parameters": dict.fromkeys(("lamda_1", "lamda_2", "s", "C"), "positive"),
+    },
+    "square taken": {
+        "states": ["D", "s2", "u1", "u2"],
+        "matrix": [
+            [0, 0, 1, 0],
+            [0, 0, 0, 1],
+            ["-(mu + k2)/m", "k2/m", 0, 0],
+            ["k2/m", "-(k2 + k3)/m", 0, 0],
+        ],
+        "initial": ["S", 0, 0, 0],
+        "parameters": dict.fromkeys(("m", "mu", "k2", "k3"), "positive") | {"S": "real"},
+    },
     "two tanks": {
         "states": ["v1", "v2"],
         "matrix": [["-a", 0], ["a", "-b"]],

@@ -9,6 +9,7 @@ import pytest
 from closedform.derivation.parametric.build import derive_cases
 from closedform.derivation.parametric.formulas import element_matrix
 from closedform.derivation.parametric.proof.ground import said_in
+from closedform.derivation.parametric.variables import variables_of
 from closedform.derivation.step import Statement, Step
 from closedform.notation.expression import Call, Name, names_in
 from closedform.notation.plain import plain
@@ -178,6 +179,13 @@ def test_nothing_is_derived_from_what_does_not_hold() -> None:
     bad = VerificationRecord((Check("x", "refuted", "y"),))
     with pytest.raises(ValueError, match="only a response that was proved"):
         derive_cases(response, replace(records, whole=bad), digits=DIGITS)
+
+
+def test_letters_that_the_model_takes_are_left_to_it() -> None:
+    variables = variables_of(solved("letters taken")[0])
+    assert (variables.root, variables.laplace) == (Name("z"), Name("z"))
+    assert variables_of(solved("square taken")[0]).square == Name("nu")
+    assert variables_of(solved("decay")[0]).root == Name("lambda")
 
 
 def test_a_matrix_of_zeros_has_nothing_in_front() -> None:

@@ -33,6 +33,7 @@ __all__ = [
     "definition",
     "divisor",
     "eigenvalue",
+    "factor_row",
     "named_zeros",
     "polynomial",
     "product_of_entries",
@@ -215,14 +216,50 @@ def case_row(ground: Ground, row: Mapping[str, Any]) -> Iterator[Finding]:
 
 
 def repeated_row(ground: Ground, row: Mapping[str, Any]) -> Iterator[Finding]:
-    """A repeated eigenvalue: as many derivatives of p vanish, and the next does not."""
-    for value, multiplicity, _ in _valued(ground, [row]):
-        derivative = ground.characteristic
-        for _ in range(multiplicity):
-            yield ground.vanishing("multiplicity", derivative(value))
-            derivative = derivative.derivative()
-        if derivative(value).contains(0):
-            yield undecided("multiplicity")
+    """A repeated eigenvalue, with its multiplicity and its index."""
+    for value, multiplicity, index in _valued(ground, [row]):
+        yield from _multiplicity(ground, value, multiplicity)
+        if index is not None:
+            yield from _index(ground, value, multiplicity, index)
+
+
+def factor_row(ground: Ground, row: Mapping[str, Any], kind: str) -> Iterator[Finding]:
+    """The multiplicity and the index of the eigenvalues of a factor, in its regime here."""
+    for statement in row["statements"]:
+        if statement.says == "eigenvalue" and kind != "double":
+            for value in ground.values(statement.sides[1]):
+                yield from _multiplicity(ground, value, row["multiplicity"])
+                yield from _index(ground, value, row["multiplicity"], row["index"])
+
+
+def _multiplicity(ground: Ground, value: acb, multiplicity: int) -> Iterator[Finding]:
+    """As many derivatives of p vanish, and the next does not."""
+    derivative = ground.characteristic
+    for _ in range(multiplicity):
+        yield ground.vanishing("multiplicity", derivative(value))
+        derivative = derivative.derivative()
+    if derivative(value).contains(0):
+        yield undecided("multiplicity")
+
+
+def _index(ground: Ground, value: acb, multiplicity: int, index: int) -> Iterator[Finding]:
+    """q(A) (A - lambda)^index is zero, and with one power less it is not; p = q (x - lambda)^m."""
+    n = ground.matrix.nrows()
+    rest = [ground.characteristic[k] for k in range(ground.characteristic.length() - 1, -1, -1)]
+    for _ in range(multiplicity):
+        for k in range(1, len(rest)):
+            rest[k] += rest[k - 1] * value
+        rest.pop()
+    shifted = ground.matrix - value * unit(n)
+    total = acb_mat(n, n)
+    for coefficient in rest:
+        total = total * ground.matrix + coefficient * unit(n)
+    for _ in range(index - 1):
+        total = total * shifted
+    if all(entry.contains(0) for entry in total.entries()):
+        yield undecided("index of an eigenvalue")
+    for entry in (total * shifted).entries():
+        yield ground.vanishing("index of an eigenvalue", entry)
 
 
 def _valued(

@@ -155,23 +155,41 @@ def _findings(ground: Ground, steps: Sequence[Step], said: Sequence[Said]) -> It
         if case in s.cases:
             yield from prover(ground, s)
     for step in steps:
-        if step.kind == "case_solution" and case in _of(step):
-            yield from exponential.shown(ground, step)
-        if step.kind == "branch" and case in _of(step):
-            for row in _rows(step, "repeated"):
-                yield from spectrum.repeated_row(ground, row)
-        if step.kind == "cases":
-            for row in _rows(step, "rows"):
-                if case in row["cases"]:
-                    yield from spectrum.case_row(ground, row)
-                    yield from exponential.functions(ground, row)
-            for row in (*_rows(step, "found"), *_rows(step, "plain")):
-                if case in row["cases"]:
-                    yield from _exceptional_row(ground, step, row)
+        if step.kind in _TABLES and case in _of(step, ground):
+            yield from _TABLES[step.kind](ground, step)
 
 
-def _of(step: Step) -> tuple[int, ...]:
-    cases: Any = step.facts["cases"]
+def _factors(ground: Ground, step: Step) -> Iterator[Finding]:
+    for row, regime in zip(_rows(step, "rows"), ground.case.regimes, strict=True):
+        yield from spectrum.factor_row(ground, row, regime.kind)
+
+
+def _repeated(ground: Ground, step: Step) -> Iterator[Finding]:
+    for row in _rows(step, "repeated"):
+        yield from spectrum.repeated_row(ground, row)
+
+
+def _cases(ground: Ground, step: Step) -> Iterator[Finding]:
+    for row in _rows(step, "rows"):
+        if ground.case.number in row["cases"]:
+            yield from spectrum.case_row(ground, row)
+            yield from exponential.functions(ground, row)
+    for row in (*_rows(step, "found"), *_rows(step, "plain")):
+        if ground.case.number in row["cases"]:
+            yield from _exceptional_row(ground, step, row)
+
+
+_TABLES: dict[str, Callable[[Ground, Step], Iterator[Finding]]] = {
+    "factors": _factors,
+    "cases": _cases,
+    "branch": _repeated,
+    "case_solution": exponential.shown,
+}
+"""What proves the tables of a step, by its kind."""
+
+
+def _of(step: Step, ground: Ground) -> tuple[int, ...]:
+    cases: Any = step.facts.get("cases", (ground.case.number,))
     return tuple(cases)
 
 
