@@ -30,8 +30,7 @@ def test_a_write_up_is_set_without_complaint(
 
 
 def test_the_damped_oscillator_takes_three_pages(pdflatex: str, tmp_path: Path) -> None:
-    response, records, _ = solved("plain oscillator")
-    log = log_of(render(derive_cases(response, records)), pdflatex, tmp_path)
+    log = log_of(render(derived("plain oscillator")), pdflatex, tmp_path)
     pages = PAGES.search(log)
     assert pages is not None
     assert int(pages[1]) <= 3
