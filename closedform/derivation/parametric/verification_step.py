@@ -24,14 +24,31 @@ def verification_step(
     """List what was proved; what is the same in all cases is said once.
 
     `full_rows` say of each check what was done; in `rows` the exact ones of all cases are
-    gathered into one, and the points at which formulas were tried are left out.
+    gathered into one, and what differs from case to case is told of the first.
     """
     facts = {
-        "rows": _gathered(_rows(whole, _without_points(records), response)),
+        "rows": _gathered(_rows(whole, _told_of_the_first(records), response)),
         "full_rows": _rows(whole, records, response),
         "compact": True,
     }
     return Step("verification", (), facts, depth="summary")
+
+
+def _told_of_the_first(records: CaseRecords) -> CaseRecords:
+    """Give a check in all cases the words of the first that has it."""
+    found: dict[tuple[str, str], list[Check]] = {}
+    for check in (check for record in records.cases for check in record.checks):
+        key = (check.item, check.outcome)
+        found.setdefault(key, []).append(replace(check, how=POINTS.sub("", check.how)))
+
+    def told(check: Check) -> Check:
+        first, *others = found[check.item, check.outcome]
+        if all(other == first for other in others):
+            return first
+        return replace(first, how=f"{first.how}; likewise in the other cases")
+
+    cases = tuple(replace(r, checks=tuple(map(told, r.checks))) for r in records.cases)
+    return replace(records, cases=cases)
 
 
 def _gathered(rows: Sequence[dict[str, object]]) -> list[dict[str, object]]:
@@ -44,21 +61,13 @@ def _gathered(rows: Sequence[dict[str, object]]) -> list[dict[str, object]]:
         how += [row["item"], ", "]
     whole = dict(proved[0]) | {"item": "identities", "how": how[:-1]}
     first = rows.index(proved[0])
-    rest = [row for row in rows[first:] if row not in proved]
-    return [*rows[:first], whole, *rest]
-
-
-def _without_points(records: CaseRecords) -> CaseRecords:
-    def bare(check: Check) -> Check:
-        return replace(check, how=POINTS.sub("", check.how))
-
-    cases = tuple(replace(r, checks=tuple(map(bare, r.checks))) for r in records.cases)
-    return replace(records, cases=cases)
+    return [*rows[:first], whole, *(row for row in rows[first:] if row not in proved)]
 
 
 def _rows(
     whole: Sequence[Check], records: CaseRecords, response: ParametricResponse
 ) -> list[dict[str, object]]:
+    """One row for each check: of the whole, in every case, and in the others in turn."""
     time, count = response.model.time, len(records.cases)
 
     def row(check: Check, group: str, *, common: bool = False) -> dict[str, object]:
@@ -70,18 +79,20 @@ def _rows(
             "group": group if count > 1 else "",
         }
 
-    common = _common(records)
     rows = [row(check, "All cases together") for check in whole]
-    rows += [row(check, f"In each of the {count} cases", common=True) for check in common]
-    for case, record in zip(response.cases, records.cases, strict=True):
-        own = [check for check in record.checks if check not in common]
-        rows += [row(check, f"In case {case.number + 1}") for check in own]
+    where: dict[Check, list[int]] = {}
+    for number, record in enumerate(records.cases, start=1):
+        for check in record.checks:
+            where.setdefault(check, []).append(number)
+    every = [c for c, numbers in where.items() if len(numbers) == count]
+    rows += [row(c, f"In each of the {count} cases", common=True) for c in every]
+    some = [(numbers, c) for c, numbers in where.items() if len(numbers) < count]
+    for numbers, check in sorted(some, key=lambda pair: pair[0]):
+        rows.append(row(check, _in_cases(numbers)))
     return rows
 
 
-def _common(records: CaseRecords) -> list[Check]:
-    """The checks that stand alike in the record of every case."""
-    if not records.cases:
-        return []
-    first, *others = records.cases
-    return [c for c in first.checks if all(c in record.checks for record in others)]
+def _in_cases(numbers: Sequence[int]) -> str:
+    if len(numbers) == 1:
+        return f"In case {numbers[0]}"
+    return f"In cases {', '.join(map(str, numbers[:-1]))} and {numbers[-1]}"
