@@ -23,6 +23,7 @@ from closedform.algebra.factor_structure import FactorStructure, structure_of_fa
 from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.parametric_spectrum import parametric_spectrum, spectrum_under_relation
+from closedform.algebra.regimes import require_known_roots
 from closedform.algebra.spectrum import Spectrum
 
 __all__ = [
@@ -174,11 +175,13 @@ def _solved(field: ParameterField, matrix: FieldMatrix, start: _Start, number: i
     spectrum = parametric_spectrum(field, a)
     if relation is not None:
         spectrum = spectrum_under_relation(field, spectrum, relation)
-    exponential = exponential_by_resolvent(field, a, spectrum)
     structures = tuple(
         structure_of_factor(field, a, f.p, start.domain) if f.degree > 2 else None
         for f in spectrum.factors
     )
+    for factor, structure in zip(spectrum.factors, structures, strict=True):
+        require_known_roots(field, factor, structure)
+    exponential = exponential_by_resolvent(field, a, spectrum)
     return Branch(number, start.equations, start.domain, a, spectrum, exponential, structures)
 
 

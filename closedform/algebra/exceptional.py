@@ -3,13 +3,45 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from fractions import Fraction
+from functools import reduce
+from math import lcm
 
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.factor_structure import FactorStructure
-from closedform.algebra.field import Polynomial, Scalar
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.field import Polynomial, Scalar, rational
+from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
+from closedform.algebra.polynomial_factors import discriminant_in_last
+from closedform.errors import InputError
 
-__all__ = ["discriminant_of", "exceptional_elements"]
+__all__ = ["RootsUnknownError", "discriminant_of", "exceptional_elements", "roots_unknown"]
+
+MOST_IN_DISCRIMINANT = 4
+"""Parameters in the discriminant of a polynomial of degree 4 and more: with five of them that
+of a quartic has thousands of terms, and says nothing to a reader."""
+
+
+class RootsUnknownError(InputError):
+    """An irreducible factor of high degree of which it is not known where its roots lie."""
+
+    def __init__(self, degree: int, parameters: tuple[str, ...]) -> None:
+        super().__init__(degree, parameters)
+        self.degree, self.parameters = degree, parameters
+
+    def __str__(self) -> str:
+        names = ", ".join(self.parameters)
+        return (
+            f"the characteristic polynomial has an irreducible factor of degree {self.degree} "
+            f"in which the parameters {names} decide how many roots are real, and no structure "
+            "of the model (symmetry, a chain or a star of compartments, springs and masses) "
+            "settles it, or whether two of them meet; give some of these parameters as numbers"
+        )
+
+
+def roots_unknown(field: ParameterField, p: Polynomial) -> RootsUnknownError:
+    """Return the error about a factor, with the parameters in it."""
+    names = {n for c in p.to_list() for n in field.names_in(c)}
+    return RootsUnknownError(int(p.degree()), tuple(n for n in field.parameters if n in names))
 
 
 def exceptional_elements(
@@ -61,7 +93,26 @@ def _denominators(
 
 
 def discriminant_of(field: ParameterField, p: Polynomial) -> Scalar:
-    """Return the discriminant of a monic polynomial of degree 2 or more."""
-    if p.degree() == 2:
-        return p.nth(1) ** 2 - field.scalar(4) * p.nth(0)
-    return p.discriminant()
+    """Return the discriminant of a monic polynomial of degree 2 or more, up to a square.
+
+    The square is an even power of a common denominator of the coefficients.
+    Raises RootsUnknownError beyond `MOST_IN_DISCRIMINANT` parameters from degree 4 on.
+    """
+    d = int(p.degree())
+    coefficients = p.to_list()
+    names = {n for c in coefficients for n in field.names_in(c)}
+    if d > 3 and len(names) > MOST_IN_DISCRIMINANT:
+        raise roots_unknown(field, p)
+    below = reduce(_common_multiple, (c.denom for c in coefficients if c))
+    numbers = lcm(*(int(n.denominator) for c in coefficients for n in (c * below).numer.coeffs()))
+    terms: dict[tuple[int, ...], Fraction] = {}
+    for power, c in enumerate(reversed(coefficients)):
+        whole = (c * field.of_polynomial(below) * field.scalar(numbers)).numer
+        terms |= {(*m, power): rational(n) for m, n in whole.iterterms()}
+    found = discriminant_in_last(terms)
+    ring = below.ring
+    return field.of_polynomial(ring.from_dict({m: ring.domain(int(n)) for m, n in found.items()}))
+
+
+def _common_multiple(f: ParameterPolynomial, g: ParameterPolynomial) -> ParameterPolynomial:
+    return f.lcm(g)

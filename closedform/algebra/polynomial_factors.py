@@ -13,7 +13,7 @@ from typing import Any
 
 from flint import Ordering, fmpz_mpoly_ctx
 
-__all__ = ["PolynomialTerms", "irreducible_factors"]
+__all__ = ["PolynomialTerms", "discriminant_in_last", "irreducible_factors"]
 
 PolynomialTerms = Mapping[tuple[int, ...], Fraction]
 """The coefficients of a polynomial by the exponents of its variables."""
@@ -46,6 +46,20 @@ def irreducible_factors(
         factors.append((made, int(exponent)))
     factors.sort(key=lambda pair: sorted(pair[0].items(), reverse=True), reverse=True)
     return number, tuple(factors)
+
+
+def discriminant_in_last(terms: PolynomialTerms) -> dict[tuple[int, ...], Fraction]:
+    """Return the discriminant with respect to the last variable, in the variables before it.
+
+    The polynomial has whole coefficients, and degree 2 or more in the last variable.
+
+    >>> discriminant_in_last({(0, 2): Fraction(1), (1, 0): Fraction(-1)})
+    {(1,): Fraction(4, 1)}
+    """
+    variables = len(next(iter(terms)))
+    polynomial = _ring(variables).from_dict({m: int(c) for m, c in terms.items()})
+    found = polynomial.discriminant(f"x{variables - 1}").to_dict()
+    return {tuple(map(int, m))[:-1]: Fraction(int(c)) for m, c in found.items()}
 
 
 @lru_cache(maxsize=64)

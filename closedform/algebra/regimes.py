@@ -10,14 +10,13 @@ from dataclasses import dataclass, replace
 from typing import Literal
 
 from closedform.algebra.domain import Comparison, ParameterDomain
-from closedform.algebra.exceptional import discriminant_of
+from closedform.algebra.exceptional import RootsUnknownError, discriminant_of, roots_unknown
 from closedform.algebra.factor_structure import FactorStructure
 from closedform.algebra.field import Polynomial, Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.spectrum import Factor
-from closedform.errors import InputError
 
-__all__ = ["Regime", "RegimeKind", "RootsUnknownError", "regimes_of"]
+__all__ = ["Regime", "RegimeKind", "RootsUnknownError", "regimes_of", "require_known_roots"]
 
 RegimeKind = Literal[
     "single",
@@ -54,23 +53,6 @@ class Regime:
     which: int = 0
 
 
-class RootsUnknownError(InputError):
-    """An irreducible factor of high degree of which it is not known where its roots lie."""
-
-    def __init__(self, degree: int, parameters: tuple[str, ...]) -> None:
-        super().__init__(degree, parameters)
-        self.degree, self.parameters = degree, parameters
-
-    def __str__(self) -> str:
-        names = ", ".join(self.parameters)
-        return (
-            f"the characteristic polynomial has an irreducible factor of degree {self.degree} "
-            f"in which the parameters {names} decide how many roots are real, and no structure "
-            "of the model (symmetry, a chain or a star of compartments, springs and masses) "
-            "settles it; give some of these parameters as numbers"
-        )
-
-
 def regimes_of(
     field: ParameterField,
     factor: Factor,
@@ -97,8 +79,23 @@ def regimes_of(
         return (Regime("decaying" if structure.negative else "real roots"),)
     elif factor.degree == 3:
         return _cubic(field, factor, domain)
-    names = {n for c in factor.polynomial for n in field.names_in(c)}
-    raise RootsUnknownError(factor.degree, tuple(n for n in field.parameters if n in names))
+    raise roots_unknown(field, factor.p)
+
+
+def require_known_roots(
+    field: ParameterField, factor: Factor, structure: FactorStructure | None
+) -> None:
+    """Raise RootsUnknownError where `regimes_of` would, before anything else is worked out."""
+    if factor.degree <= 3 or (factor.degree == 4 and factor.roots.form == "even"):
+        return
+    even = factor.roots.form == "even"
+    settled = structure is not None and (
+        (structure.squared and structure.negative)
+        if even
+        else (not structure.squared and structure.real is not None)
+    )
+    if not settled:
+        raise roots_unknown(field, factor.p)
 
 
 def _quadratic(factor: Factor, domain: ParameterDomain) -> tuple[Regime, ...]:

@@ -11,6 +11,7 @@ from closedform.algebra.parameter_field import ParameterField
 from closedform.notation.expression import Expression
 from closedform.notation.plain import plain
 from closedform.notation.rational_formula import rational_formula
+from closedform.response.parametric.modes import perfect_root
 
 __all__ = ["WrittenComparison", "written_comparison", "written_equation"]
 
@@ -38,15 +39,39 @@ def written_comparison(domain: ParameterDomain, comparison: Comparison) -> Writt
     field = domain.field
     element, turned = _undecided_part(domain, comparison)
     relation: Sign = "==" if comparison.relation == "=" else comparison.relation
-    above, below = _split(field, element)
-    if turned:
-        above, below = below, above
-    if _comes_first(field, below, above):
-        flipped: dict[Sign, Sign] = {">": "<", ">=": "<=", "==": "==", "!=": "!="}
-        above, below, relation = below, above, flipped[relation]
+    if comparison.relation == ">" and (root := perfect_root(field, element)) is not None:
+        element, relation, turned = root, "!=", False
+    single = _of_one_parameter(field, element)
+    if single is not None:
+        above, below, rising = single
+        turned = turned if rising else not turned
+        if turned:
+            relation = _FLIPPED[relation]
+    else:
+        above, below = _split(field, element)
+        if turned:
+            above, below = below, above
+        if _comes_first(field, below, above):
+            above, below, relation = below, above, _FLIPPED[relation]
     return WrittenComparison(
         rational_formula(field, above), relation, rational_formula(field, below)
     )
+
+
+_FLIPPED: dict[Sign, Sign] = {">": "<", ">=": "<=", "==": "==", "!=": "!="}
+
+
+def _of_one_parameter(field: ParameterField, element: Scalar) -> tuple[Scalar, Scalar, bool] | None:
+    """For a x + b with numbers a and b: x, -b/a, and whether a > 0."""
+    names = field.names_in(element)
+    if len(names) != 1 or not element.denom.is_ground:
+        return None
+    (name,) = names
+    slope = field.constant(field.derivative(element, name))
+    if slope is None:
+        return None
+    x = field.symbol(name)
+    return x, x - element / field.scalar(slope), slope > 0
 
 
 def written_equation(field: ParameterField, name: str, value: Scalar) -> WrittenComparison:
