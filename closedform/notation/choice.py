@@ -30,22 +30,26 @@ def shortest_formula(formulas: Iterable[Expression], places: Mapping[str, int]) 
 
 
 def shortest_of(
-    items: Iterable[T], formula_of: Callable[[T], Expression], places: Mapping[str, int]
+    items: Iterable[T],
+    formula_of: Callable[[T], Expression],
+    places: Mapping[str, int],
+    length_of: Callable[[T], int] | None = None,
 ) -> T:
     """Return the item whose formula has the fewest operations.
 
     Of equals, the one with the fewest fractions within fractions, then with the fewest names,
     then with the fewest sums inside of other operations, then with the fewest minus signs in
     these, then with the fewest differences whose names come in the other order; then the
-    earlier.
+    earlier.  `length_of` counts the operations of an item without writing it; then only those
+    that are shortest are written.
     """
-    shown = [(item, formula_of(item)) for item in items]
-    counts = [operations(formula) for _, formula in shown]
+    kept = list(items)
+    if len(kept) == 1:
+        return kept[0]
+    counts = [length_of(i) if length_of else operations(formula_of(i)) for i in kept]
     least = min(counts)
-    best = [pair for pair, count in zip(shown, counts, strict=True) if count == least]
-    if len(best) == 1:
-        return best[0][0]
-    return min(best, key=lambda pair: _taste(pair[1], places))[0]
+    best = [item for item, count in zip(kept, counts, strict=True) if count == least]
+    return best[0] if len(best) == 1 else min(best, key=lambda i: _taste(formula_of(i), places))
 
 
 def places_of(names: Iterable[str]) -> dict[str, int]:

@@ -8,12 +8,14 @@ are written in the same way.  Long sums are tried in few forms only.
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Iterable, Iterator, Sequence
+from dataclasses import dataclass, replace
+from dataclasses import field as field_of
 from fractions import Fraction
-from functools import lru_cache
+from functools import cached_property, lru_cache
 from itertools import chain, combinations
 from math import gcd, isqrt, lcm
+from operator import attrgetter
 
 from closedform.algebra.field import rational
 from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
@@ -26,6 +28,7 @@ from closedform.notation.expression import (
     Negation,
     Number,
     Power,
+    Product,
     Quotient,
     power_of,
     product,
@@ -35,7 +38,6 @@ from closedform.notation.terms import sum_of
 __all__ = [
     "Laurent",
     "Weight",
-    "as_weight",
     "laurent_of",
     "monomial_weight",
     "ordered",
@@ -43,6 +45,7 @@ __all__ = [
     "product_of_weights",
     "shortest",
     "shortest_sum",
+    "sum_of_weights",
     "written",
 ]
 
@@ -57,20 +60,42 @@ GROUPED = 40
 
 @dataclass(frozen=True)
 class Weight:
-    """number · above / below, the number with the sign: a value ready to take more factors."""
+    """number · above / below, the number with the sign: a value ready to take more factors.
+
+    The factors are no products and not 1; `cost` counts the operations inside of them.
+    """
 
     number: Fraction
     above: tuple[Expression, ...] = ()
     below: tuple[Expression, ...] = ()
+    cost: int = field_of(default=0, compare=False)
+
+    @cached_property
+    def size(self) -> int:
+        """The operations of the value without its sign."""
+        above = len(self.above) + (abs(self.number.numerator) != 1)
+        below = len(self.below) + (self.number.denominator != 1)
+        return self.cost + max(above - 1, 0) + below
+
+    @property
+    def length(self) -> int:
+        """The operations of the value written as one term."""
+        if self.number > 0 or abs(self.number.numerator) != 1 or not self.above:
+            return self.size
+        return self.size + 1
+
+    @cached_property
+    def term(self) -> Expression:
+        """The value written as one term, its sign outside."""
+        return written(self)
 
 
 def written(
     weight: Weight, factors: Sequence[Expression] = (), divisors: Sequence[Expression] = ()
 ) -> Expression:
     """Return weight · factors / divisors as one term, its sign outside."""
-    size = abs(weight.number)
-    above = product([Number(Fraction(size.numerator)), *weight.above, *factors])
-    below = product([Number(Fraction(size.denominator)), *weight.below, *divisors])
+    above = _product(abs(weight.number.numerator), weight.above, factors)
+    below = _product(weight.number.denominator, weight.below, divisors)
     if below == ONE:
         term = above
     elif isinstance(above, Number) and isinstance(below, Number):
@@ -80,9 +105,25 @@ def written(
     return Negation(term) if weight.number < 0 else term
 
 
+def _product(
+    number: int, inside: tuple[Expression, ...], others: Sequence[Expression]
+) -> Expression:
+    front = () if number == 1 else (Number(Fraction(number)),)
+    if others:
+        return product([*front, *inside, *others])
+    factors = front + inside
+    if len(factors) > 1:
+        return Product(factors)
+    return factors[0] if factors else ONE
+
+
 def shortest(field: ParameterField, forms: Iterable[Weight]) -> Weight:
     """Return the form with the fewest operations; of equals, what a person would write."""
-    return shortest_of(forms, written, _places(field))
+    return shortest_of(forms, _term, _places(field), _length)
+
+
+_term: Callable[[Weight], Expression] = attrgetter("term")
+_length: Callable[[Weight], int] = attrgetter("length")
 
 
 @lru_cache(maxsize=64)
@@ -92,20 +133,33 @@ def _places(field: ParameterField) -> dict[str, int]:
 
 def product_of_weights(weights: Iterable[Weight]) -> Weight:
     """Return the product; single parameters come before sums, else the order is kept."""
-    number = Fraction(1)
+    number, cost = Fraction(1), 0
     above: list[Expression] = []
     below: list[Expression] = []
     for weight in weights:
         number *= weight.number
+        cost += weight.cost
         above += weight.above
         below += weight.below
-    return Weight(number, tuple(sorted(above, key=_is_long)), tuple(sorted(below, key=_is_long)))
+    above.sort(key=_is_long)
+    below.sort(key=_is_long)
+    return Weight(number, tuple(above), tuple(below), cost)
 
 
 def power_of_weight(weight: Weight, exponent: int) -> Weight:
     """Return a weight to a positive integer power."""
-    raised = [tuple(_raised(f, exponent) for f in fs) for fs in (weight.above, weight.below)]
-    return Weight(weight.number**exponent, *raised)
+    if exponent == 1:
+        return weight
+    above, below = (
+        tuple(_raised(factor, exponent) for factor in factors)
+        for factors in (weight.above, weight.below)
+    )
+    bases = sum(not _is_power(factor) for factor in (*weight.above, *weight.below))
+    return Weight(weight.number**exponent, above, below, weight.cost + bases)
+
+
+def _is_power(factor: Expression) -> bool:
+    return isinstance(factor, Power) and isinstance(factor.exponent, Number)
 
 
 def _raised(factor: Expression, exponent: int) -> Expression:
@@ -139,7 +193,8 @@ def monomial_weight(field: ParameterField, exponents: Sequence[int], number: Fra
     """Return number · product of parameter^exponent."""
     pairs = list(zip(field.parameters, exponents, strict=True))
     above = tuple(power_of(Name(n), e) for n, e in pairs if e > 0)
-    return Weight(number, above, tuple(power_of(Name(n), -e) for n, e in pairs if e < 0))
+    below = tuple(power_of(Name(n), -e) for n, e in pairs if e < 0)
+    return Weight(number, above, below, sum(abs(e) > 1 for e in exponents))
 
 
 @lru_cache(maxsize=65536)
@@ -157,14 +212,16 @@ def shortest_sum(field: ParameterField, terms: Laurent) -> Weight:
 
 
 def _sum_of_groups(field: ParameterField, groups: Sequence[Laurent]) -> Weight:
-    return as_weight(sum_of([written(shortest_sum(field, group)) for group in groups]))
+    return sum_of_weights([shortest_sum(field, group) for group in groups])
 
 
-def as_weight(total: Expression) -> Weight:
-    """Return a sum as a weight, its sign outside where all terms are negative."""
+def sum_of_weights(weights: Sequence[Weight]) -> Weight:
+    """Return a sum of at least two values, its sign outside where all terms are negative."""
+    total = sum_of([weight.term for weight in weights])
+    cost = sum(weight.size for weight in weights) + len(weights) - 1
     if isinstance(total, Negation):
-        return Weight(Fraction(-1), (total.operand,))
-    return Weight(Fraction(1), (total,))
+        return Weight(Fraction(-1), (total.operand,), cost=cost)
+    return Weight(Fraction(1), (total,), cost=cost)
 
 
 def _shared(terms: Laurent) -> tuple[tuple[int, ...], Fraction]:
@@ -262,10 +319,9 @@ def _squares(field: ParameterField, terms: Laurent) -> Iterator[Weight]:
         ]
         rest = _without_square(terms, inner, sign)
         if len(rest) < len(terms) - 2:
-            square = written(power_of_weight(shortest_sum(field, ordered(inner)), 2))
-            parts = [square if sign > 0 else Negation(square)]
-            parts += [written(shortest_sum(field, rest))] if rest else []
-            yield as_weight(sum_of(parts))
+            square = power_of_weight(shortest_sum(field, ordered(inner)), 2)
+            square = replace(square, number=square.number * sign)
+            yield sum_of_weights([square, shortest_sum(field, rest)]) if rest else square
 
 
 def _without_square(

@@ -18,11 +18,10 @@ from typing import Any
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import Factored, ParameterField, ParameterPolynomial
 from closedform.algebra.polynomial_factors import irreducible_factors
-from closedform.notation.expression import ZERO, Expression, operations
+from closedform.notation.expression import ZERO, Expression
 from closedform.notation.laurent_sum import (
     Laurent,
     Weight,
-    as_weight,
     laurent_of,
     monomial_weight,
     ordered,
@@ -30,9 +29,10 @@ from closedform.notation.laurent_sum import (
     product_of_weights,
     shortest,
     shortest_sum,
+    sum_of_weights,
     written,
 )
-from closedform.notation.terms import opened, sum_of
+from closedform.notation.terms import opened
 
 __all__ = ["rational_formula", "taken_apart", "weighted_parts", "weighted_rational"]
 
@@ -165,7 +165,7 @@ def _divisions(
 
 
 def _sum_of(field: ParameterField, parts: Sequence[Scalar]) -> Weight:
-    return as_weight(sum_of([weighted_rational(field, part, (), ()) for part in parts]))
+    return sum_of_weights([_weight(field, taken_apart(part)) for part in parts])
 
 
 def _divided(
@@ -215,11 +215,11 @@ def _factored(field: ParameterField, front: Weight, above: Powers, below: Powers
             turned = _turned(field, powers, parts)
             if turned is not None:
                 parts[turned[0]] = turned[1]
-                front = Weight(-front.number, front.above, front.below)
+                front = replace(front, number=-front.number)
                 break
     inverse = product_of_weights(lower)
     return product_of_weights(
-        [front, *upper, Weight(1 / inverse.number, inverse.below, inverse.above)]
+        [front, *upper, Weight(1 / inverse.number, inverse.below, inverse.above, inverse.cost)]
     )
 
 
@@ -234,10 +234,6 @@ def _turned(
     for place, ((factor, exponent), part) in enumerate(zip(powers, parts, strict=True)):
         if exponent % 2:
             opposite = _power(field, -factor, exponent)
-            if opposite.number > 0 and _length(opposite) <= _length(part):
+            if opposite.number > 0 and opposite.length <= part.length:
                 return place, opposite
     return None
-
-
-def _length(weight: Weight) -> int:
-    return operations(written(weight))

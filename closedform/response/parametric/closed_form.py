@@ -15,6 +15,7 @@ from dataclasses import dataclass, replace
 from functools import lru_cache
 
 from closedform.algebra.field import Scalar
+from closedform.algebra.lowest_terms import multiplied_out
 from closedform.algebra.parameter_field import Factored, ParameterField
 from closedform.notation.choice import places_of, shortest_formula
 from closedform.notation.expression import (
@@ -87,8 +88,7 @@ def fronted_matrix(
     # beyond three states only what all entries share is worth a try: the rest is rarely shorter
     for front in fronts_of(amounts, few=True, partial=len(kept) <= 3):
         if front != UNIT:
-            scale = 1 / field.product_of(front)
-            inside = [[_scaled(terms, scale) for terms in row] for row in kept]
+            inside = [[_over(field, terms, front) for terms in row] for row in kept]
             outside = weighted_parts(field, front, shared)
             forms.append((outside, _written_rows(field, inside, time)))
     return min(forms, key=_operations_of_fronted)
@@ -110,8 +110,11 @@ def _without_rate(field: ParameterField, terms: Sequence[Term]) -> tuple[Term, .
     return tuple(replace(term, rate=field.scalar(0)) for term in terms)
 
 
-def _scaled(terms: Sequence[Term], factor: Scalar) -> tuple[Term, ...]:
-    return tuple(replace(term, amount=term.amount * factor) for term in terms)
+def _over(field: ParameterField, terms: Sequence[Term], front: Factored) -> tuple[Term, ...]:
+    return tuple(
+        replace(term, amount=multiplied_out(field, over(taken_apart(term.amount), front)))
+        for term in terms
+    )
 
 
 @lru_cache(maxsize=4096)

@@ -17,6 +17,7 @@ from operator import mul
 
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import Polynomial, Scalar
+from closedform.algebra.lowest_terms import fraction, sum_at
 from closedform.algebra.parameter_field import ParameterField
 from closedform.notation.expression import operations
 from closedform.notation.rational_formula import rational_formula
@@ -55,7 +56,11 @@ def terms_of(
                 other = _over_differences(field, writing, modes, mode, entry)
                 parts = min(parts, other, key=lambda terms: _length(writing, terms))
             found += [
-                replace(part, amount=part.amount * weight, power=part.power + power)
+                replace(
+                    part,
+                    amount=part.amount * weight if power > 1 else part.amount,
+                    power=part.power + power,
+                )
                 for part in parts
             ]
     return [part for part in found if part.amount]
@@ -84,17 +89,13 @@ def _over_differences(
     for other in others:
         numerator = (numerator * other.factor.p**other.factor.index).rem(p)
     terms = _terms(field, writing, mode, numerator)
-    return [
-        replace(
-            term,
-            amount=reduce(
-                lambda amount, other: amount / _value_at(field, writing, other, term.rate),
-                others,
-                term.amount,
-            ),
-        )
-        for term in terms
-    ]
+    divided = []
+    for term in terms:
+        values = [_value_at(field, writing, other, term.rate) for other in others]
+        above = [term.amount.numer, *(value.denom for value in values)]
+        below = [term.amount.denom, *(value.numer for value in values)]
+        divided.append(replace(term, amount=fraction(writing, above, below)))
+    return divided
 
 
 def _value_at(field: ParameterField, writing: ParameterField, mode: Mode, root: Scalar) -> Scalar:
@@ -103,9 +104,8 @@ def _value_at(field: ParameterField, writing: ParameterField, mode: Mode, root: 
         sign = -1 if mode.regime.kind == "decaying" else 1
         value = reduce(mul, (root - sign * writing.symbol(name) for name in mode.names))
     else:
-        value = writing.domain.zero
-        for c in mode.factor.polynomial:
-            value = value * root + field.into(writing, c)
+        coefficients = [field.into(writing, c) for c in reversed(mode.factor.polynomial)]
+        value = sum_at(writing, coefficients, root)
     return value**mode.factor.index
 
 
@@ -133,9 +133,9 @@ def _terms(
                 Term(r[0] + centre * r[1], 1, centre, None, None),
             ]
         case "decaying":
-            return _real_terms(r, [-x for x in names])
+            return _real_terms(writing, r, [-x for x in names])
         case "real roots":
-            return _real_terms(r, names)
+            return _real_terms(writing, r, names)
         case "root and pair":
             root, sigma, omega = names
             g = root - sigma
@@ -166,14 +166,14 @@ def _moved(entry: Polynomial, centre: Scalar, length: int) -> list[Scalar]:
     return [moved.nth(k) for k in range(length)]
 
 
-def _real_terms(r: Sequence[Scalar], roots: Sequence[Scalar]) -> list[Term]:
+def _real_terms(
+    writing: ParameterField, r: Sequence[Scalar], roots: Sequence[Scalar]
+) -> list[Term]:
     """R(l_i)/prod (l_i - l_j) e^(l_i t); the fastest is last, as they are read."""
     terms = []
     for i, root in enumerate(roots):
-        amount = sum((c * root**k for k, c in enumerate(r[1:], 1)), r[0])
-        for j, other in enumerate(roots):
-            if j != i:
-                amount = amount / (root - other)
+        differences = [root - other for j, other in enumerate(roots) if j != i]
+        amount = sum_at(writing, r, root, differences)
         terms.append(Term(amount, 0, root, None, None))
     return terms
 

@@ -16,6 +16,7 @@ from math import prod
 from typing import Literal
 
 from closedform.algebra.field import Scalar
+from closedform.algebra.lowest_terms import equal_under, put_in
 from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
 from closedform.notation.expression import Expression, operations
 from closedform.response.parametric.closed_form import Term, closed_form
@@ -255,7 +256,7 @@ def _substituted(field: ParameterField, element: Scalar, rewriting: Rewriting) -
     """Return the element without the parameter.  Raises ArithmeticError if it became another."""
     if rewriting.parameter not in field.names_in(element):
         return element
-    changed = field.substituted(element, {rewriting.parameter: rewriting.replacement})
-    if _restored(field, changed - element, rewriting):
+    changed = put_in(field, element, rewriting.parameter, rewriting.replacement)
+    if not equal_under(field, changed, element, rewriting.name, rewriting.power, rewriting.value):
         raise ArithmeticError(f"{rewriting} changes {element}")
     return changed

@@ -4,9 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
+from functools import lru_cache
 from typing import Literal
 
 from closedform.algebra.field import Scalar
+from closedform.algebra.lowest_terms import fraction
 from closedform.algebra.parameter_field import ParameterField
 
 __all__ = ["Kernel", "Term", "apart", "gathered", "separable", "separated"]
@@ -77,17 +79,24 @@ def separated(
     """Return the terms with each of the names in turn, and those without any of them."""
     parts, rest = [], tuple(terms)
     for name in names:
-        left = [_without(field, term.amount, name) for term in rest]
-        pairs = list(zip(rest, left, strict=True))
-        parts.append(tuple(replace(t, amount=t.amount - r) for t, r in pairs if t.amount != r))
-        rest = tuple(replace(t, amount=r) for t, r in pairs if r)
+        pairs = [(term, *_parted(field, term.amount, name)) for term in rest]
+        parts.append(tuple(replace(t, amount=own) for t, own, _ in pairs if own))
+        rest = tuple(replace(t, amount=other) for t, _, other in pairs if other)
     return [*parts, rest]
 
 
-def _without(field: ParameterField, element: Scalar, name: str) -> Scalar:
-    """Return an element at 0 of a parameter that does not stand below."""
+@lru_cache(maxsize=4096)
+def _parted(field: ParameterField, element: Scalar, name: str) -> tuple[Scalar, Scalar]:
+    """Return the terms above with a parameter, and those without it, each over what is below."""
     place = field.parameters.index(name)
-    kept = {m: c for m, c in element.numer.iterterms() if not m[place]}
-    if len(kept) == len(element.numer):
-        return element
-    return field.of_polynomial(element.numer.ring.from_dict(kept)) / element.denom
+    ring = element.numer.ring
+    own = {m: c for m, c in element.numer.iterterms() if m[place]}
+    if not own:
+        return field.domain.zero, element
+    if len(own) == len(element.numer):
+        return element, field.domain.zero
+    other = {m: c for m, c in element.numer.iterterms() if not m[place]}
+    with_it, without = (
+        fraction(field, [ring.from_dict(part)], [element.denom]) for part in (own, other)
+    )
+    return with_it, without
