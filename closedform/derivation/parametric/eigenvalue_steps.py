@@ -13,7 +13,12 @@ from closedform.derivation.parametric.formulas import named_or_written, polynomi
 from closedform.derivation.parametric.reasons import reason_of
 from closedform.derivation.parametric.spectrum import values_of
 from closedform.derivation.parametric.structure_steps import structure_facts
-from closedform.derivation.parametric.variables import Variables, root_symbol, variables_of
+from closedform.derivation.parametric.variables import (
+    Variables,
+    first_free,
+    root_symbol,
+    variables_of,
+)
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.notation.expression import (
     ONE,
@@ -122,7 +127,7 @@ def _quadratic(
             "numbers": symbol,
         }
     letters, number = naming
-    name = Name(letters.take("D", number))
+    name = Name(first_free(letters, ("D", "Delta", "E"), number))
     centre = rational_formula(field, factor.roots.centre)
     root: Side = Symbol("real pair", parts=(centre, Call("sqrt", name)))
     row: dict[str, object] = {

@@ -12,7 +12,7 @@ from closedform.notation.latex.names import printed_key
 from closedform.response.parametric.quantities import Letters
 from closedform.response.parametric.response import ParametricResponse
 
-__all__ = ["Variables", "names_of", "root_symbol", "variables_of"]
+__all__ = ["Variables", "first_free", "names_of", "root_symbol", "variables_of"]
 
 _NUMBERED = re.compile(r"lambda_([0-9]+)")
 
@@ -64,6 +64,16 @@ def _free(letters: tuple[str, ...], taken: Collection[str]) -> Name:
         if letter not in taken:
             return Name(letter)
     return Name(Letters(taken).take(letters[0]))
+
+
+def first_free(letters: Letters, stems: tuple[str, ...], number: int | None = None) -> str:
+    """Return the first of some names that is free, as it is or with the number."""
+    for stem in stems:
+        plain = stem if number is None else f"{stem}_{number}"
+        taken = letters.take(stem, number)
+        if taken == plain:
+            return taken
+    return letters.take(stems[-1], number)
 
 
 def root_symbol(variables: Variables, numbers: range) -> Symbol:
