@@ -49,6 +49,8 @@ def test_what_is_not_covered_is_said_below_the_title() -> None:
         assert text.index(r"\begin{document}") < told < text.index(r"\section{Model}")
         assert "there are more branches than are solved" in text
         assert "put the numbers into the model" in text
+        assert "but for those named above" in text
+        assert "one case, besides what is not covered" in text
 
 
 def test_all_regimes_stand_in_one_document() -> None:

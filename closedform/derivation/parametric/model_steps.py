@@ -141,6 +141,7 @@ def parameters_step(response: ParametricResponse) -> Step:
         "meanings": any(row["meaning"] for row in rows),
         "values": any(row["value"] is not None for row in rows),
         "further": others,
+        "open": any(uncovered(response.branches)),
         "restated": [_told(d) for d in model.restated],
     }
     return Step("parameters", (*restated, *conditions, *abbreviations), facts, depth="summary")
