@@ -232,17 +232,16 @@ def _imposed(
         narrowed = domain.narrowed(Comparison(equation.polynomial, "="))
         return _Start((*start.equations, equation), narrowed)
     put = {equation.parameter: equation.value}
-    earlier = (_put_in_equation(field, e, put) for e in start.equations)
-    equations = (*(e for e in earlier if e.polynomial), equation)
-    return _Start(equations, domain.substituted(equation.parameter, equation.value))
+    solved = (_put_in_equation(field, e, put) for e in start.equations if e.parameter is not None)
+    made = _Start((*solved, equation), domain.substituted(equation.parameter, equation.value))
+    kept = next((e.polynomial for e in start.equations if e.parameter is None), None)
+    # an equation that was kept is another one now, and may be solved
+    return made if kept is None else _imposed(field, made, kept)
 
 
 def _put_in_equation(field: ParameterField, equation: Equation, put: dict[str, Scalar]) -> Equation:
     value = None if equation.value is None else field.substituted(equation.value, put)
-    polynomial = equation.polynomial
-    if equation.parameter is None:
-        polynomial = field.substituted(polynomial, put)
-    return Equation(polynomial, equation.parameter, value)
+    return replace(equation, value=value)
 
 
 def _equation(field: ParameterField, polynomial: Scalar, domain: ParameterDomain) -> Equation:

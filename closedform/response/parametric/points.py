@@ -12,10 +12,11 @@ from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.enclosure import ball_of
 from closedform.algebra.field import Scalar, rational
 from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.sample import holds_at
 from closedform.algebra.surds import SurdSum
 from closedform.response.parametric.case import Case
 
-__all__ = ["Point", "case_points"]
+__all__ = ["Point", "border_points", "case_points"]
 
 
 @dataclass(frozen=True)
@@ -46,13 +47,23 @@ class Point:
 def case_points(field: ParameterField, case: Case, count: int, *, seed: int = 1) -> list[Point]:
     """Return up to `count` points of a case, the same each time; fewer if few are found."""
     points = [_completed(field, case, values) for values in case.domain.sample(count, seed)]
-    found = [p for p in points if p is not None]
-    if found:
-        return found
-    return _on_a_curve(field, case, count, seed)
+    return points or _on_a_curve(field, case, count, seed)
 
 
-def _completed(field: ParameterField, case: Case, values: dict[str, Fraction]) -> Point | None:
+def border_points(field: ParameterField, case: Case) -> list[Point]:
+    """Return points of a case at which one parameter is 0, where the case allows it."""
+    found = []
+    for values in case.domain.sample(1, 5):
+        for name in field.parameters:
+            if name in case.branch.values:
+                continue
+            moved = {**values, name: Fraction(0)}
+            if all(holds_at(condition, moved) for condition in case.domain.conditions):
+                found.append(_completed(field, case, moved))
+    return found
+
+
+def _completed(field: ParameterField, case: Case, values: dict[str, Fraction]) -> Point:
     """Put in what the equations of the branch say."""
     exact = {name: SurdSum.rational(value) for name, value in values.items()}
     whole = dict(values)

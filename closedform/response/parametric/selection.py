@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 
 from closedform.algebra.branches import Branch
 from closedform.algebra.domain import Comparison, ParameterDomain
@@ -26,43 +27,76 @@ def case_conditions(
 ) -> tuple[tuple[WrittenComparison, ...], ParameterDomain] | None:
     """Return what selects a case, as printed, and the part of the domain that it selects.
 
-    First the equations of the branch, then what must not vanish, then the regimes.  None if
-    these contradict each other: then there is no such case.
+    First the equations, of the branch and of regimes, then what must not vanish, then the signs
+    of the regimes.  None if these contradict each other: then there is no such case.
     """
     field = domain.field
-    written: list[WrittenComparison] = []
-    inside = branch.domain
+    of_regimes = [c for regime in regimes for c in regime.conditions]
+    found = _Found(_equations(domain, branch), branch.domain)
+    put: dict[str, Scalar] = {}
+    for comparison in of_regimes:
+        if comparison.relation == "=":
+            found.add(comparison)
+            put |= _solved_for_one(field, comparison.element)
+    whole = found.inside.narrowed(*of_regimes)
+    for exceptional in branch.exceptional:
+        if exceptional.fate != "excluded":
+            polynomials = [field.substituted(p, put) for p in exceptional.polynomials]
+            if not any(polynomials):
+                return None
+            found.add_not_all_zero(polynomials, whole)
+    for comparison in of_regimes:
+        found.add(comparison)
+    if (branch.equations or of_regimes) and found.inside.contradiction() is not None:
+        return None
+    return tuple(dict.fromkeys(found.written)), found.inside
+
+
+@dataclass
+class _Found:
+    """The conditions written so far, and the domain inside them."""
+
+    written: list[WrittenComparison]
+    inside: ParameterDomain
+
+    def add(self, comparison: Comparison) -> None:
+        """Add a condition, unless it is implied."""
+        if not self.inside.implies(comparison):
+            self.written.append(written_comparison(self.inside, comparison))
+            self.inside = self.inside.narrowed(comparison)
+
+    def add_not_all_zero(self, polynomials: Sequence[Scalar], whole: ParameterDomain) -> None:
+        """Add that at least one of the polynomials is not zero, unless `whole` implies it."""
+        field = self.inside.field
+        if len(polynomials) == 1:
+            if not whole.implies(Comparison(polynomials[0], "!=")):
+                self.add(Comparison(polynomials[0], "!="))
+            return
+        squares = Comparison(sum((p**2 for p in polynomials), field.domain.zero), "!=")
+        if not whole.implies(squares):
+            shown = [power_of(rational_formula(field, p), 2) for p in polynomials]
+            self.written.append(WrittenComparison(sum_of(shown), "!=", ZERO))
+            self.inside = self.inside.narrowed(squares)
+
+
+def _equations(domain: ParameterDomain, branch: Branch) -> list[WrittenComparison]:
+    """The equations of a branch, but for those that the whole domain has."""
+    written = []
     for equation in branch.equations:
-        if domain.implies(Comparison(equation.polynomial, "=")):
+        vanishing = Comparison(equation.polynomial, "=")
+        if domain.implies(vanishing):
             continue
         if equation.parameter is None or equation.value is None:
-            written.append(written_comparison(domain, Comparison(equation.polynomial, "=")))
+            written.append(written_comparison(domain, vanishing))
         else:
-            written.append(written_equation(field, equation.parameter, equation.value))
-    of_regimes = [c for regime in regimes for c in regime.conditions]
-    whole = inside.narrowed(*of_regimes)
-    for exceptional in branch.exceptional:
-        if exceptional.fate == "excluded":
-            continue
-        polynomials = exceptional.polynomials
-        squares = sum((p**2 for p in polynomials), field.domain.zero)
-        comparison = Comparison(polynomials[0] if len(polynomials) == 1 else squares, "!=")
-        if not whole.implies(comparison):
-            if len(polynomials) == 1:
-                written.append(written_comparison(inside, comparison))
-            else:
-                written.append(_not_all_zero(field, polynomials))
-            inside = inside.narrowed(comparison)
-    for comparison in of_regimes:
-        if not inside.implies(comparison):
-            written.append(written_comparison(inside, comparison))
-            inside = inside.narrowed(comparison)
-    if (branch.equations or of_regimes) and inside.contradiction() is not None:
-        return None
-    return tuple(dict.fromkeys(written)), inside
+            written.append(written_equation(domain.field, equation.parameter, equation.value))
+    return written
 
 
-def _not_all_zero(field: ParameterField, polynomials: Sequence[Scalar]) -> WrittenComparison:
-    """The sum of the squares is not zero: at least one of the polynomials is not."""
-    squares = [power_of(rational_formula(field, p), 2) for p in polynomials]
-    return WrittenComparison(sum_of(squares), "!=", ZERO)
+def _solved_for_one(field: ParameterField, element: Scalar) -> dict[str, Scalar]:
+    """The value of the last parameter in which an equation is linear with a number before it."""
+    for name in reversed(field.parameters):
+        slope = field.derivative(element, name)
+        if slope and field.constant(slope) is not None:
+            return {name: field.symbol(name) - element / slope}
+    return {}

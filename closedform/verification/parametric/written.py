@@ -11,7 +11,7 @@ from closedform.algebra.enclosure import ball_of
 from closedform.notation import enclose
 from closedform.notation.expression import Expression, Product
 from closedform.response.parametric.case import Case
-from closedform.response.parametric.points import Point, case_points
+from closedform.response.parametric.points import Point, border_points, case_points
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared
 from closedform.verification.parametric.values import (
@@ -39,14 +39,16 @@ def formula_check(response: ParametricResponse, case: Case) -> Check:
     if not points:
         return Check(_ITEM, "not attempted", "no point of this case was found to put in")
     parsed = {name: read_back(model, case, formula) for name, formula in _written(response, case)}
-    findings = (_finding(response, case, parsed, point) for point in points)
+    border = border_points(model.field, case)
+    findings = (_finding(response, case, parsed, point) for point in (*points, *border))
     where = "; ".join(map(str, points))
+    also = f", and at {len(border)} more where one parameter is zero" if border else ""
     return check_of(
         _ITEM,
         findings,
         f"{len(parsed)} formulas and the definitions of their names were read back from their "
         f"text; they agree with the exponential of A by ball arithmetic {AGREED} at "
-        f"{len(points)} points of the case ({where}) and two instants each",
+        f"{len(points)} points of the case ({where}){also}, at two instants each",
     )
 
 

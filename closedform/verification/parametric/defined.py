@@ -1,0 +1,208 @@
+"""That the formulas of a case divide by nothing that vanishes, anywhere in the case.
+
+The identities are proved for the coefficients as rational functions.  A formula as it is
+written may divide by more: by what was put in the place of a parameter, say.  So every
+divisor in its text is taken apart, and each factor is shown not to vanish on the case.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from itertools import combinations
+
+from closedform.algebra.branches import linear_solution
+from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.field import Scalar
+from closedform.algebra.parameter_field import ParameterField
+from closedform.errors import Place
+from closedform.notation.expression import (
+    Call,
+    Expression,
+    Negation,
+    Power,
+    Product,
+    Quotient,
+    Sum,
+)
+from closedform.notation.rational import rational_value
+from closedform.response.parametric.case import Case
+from closedform.response.parametric.modes import Mode
+from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.parametric.values import read_back
+from closedform.verification.record import Check
+
+__all__ = ["defined_check"]
+
+_ITEM = "formulas defined"
+
+
+def defined_check(response: ParametricResponse, case: Case) -> Check:
+    """No divisor in the formulas of a case, and in the definitions of its names, vanishes."""
+    model = response.model
+    names = tuple(q.name for q in case.quantities)
+    field = ParameterField(parameters=(*model.field.parameters, *names))
+    domain = _with_names(model.field, field, case)
+    divisors: dict[Scalar, None] = {}
+    for formula in _formulas(case):
+        read = read_back(model, case, formula)
+        for below in _divisors(read):
+            element = rational_value(below, field, Place())
+            divisors |= dict.fromkeys(_factors(field, element))
+    undecided = [d for d in divisors if not domain.sign_of(d).never_zero]
+    if undecided:
+        how = f"it was not decided whether {undecided[0]} may vanish"
+        return Check(_ITEM, "not attempted", how)
+    return Check(
+        _ITEM,
+        "proved",
+        f"every divisor in the formulas was taken apart, {len(divisors)} factors in all: none of "
+        "them vanishes in this case",
+    )
+
+
+def _formulas(case: Case) -> Iterator[Expression]:
+    yield from case.solution
+    yield from case.outputs
+    for row in (*case.transition, *case.fronted[1]):
+        yield from row
+    if case.fronted[0] is not None:
+        yield case.fronted[0]
+    for quantity in case.quantities:
+        if quantity.formula is not None:
+            yield quantity.formula
+
+
+def _divisors(expression: Expression) -> Iterator[Expression]:
+    match expression:
+        case Quotient(above, below):
+            yield below
+            yield from _divisors(above)
+            yield from _divisors(below)
+        case Power(base, exponent):
+            if isinstance(exponent, Negation):
+                yield base
+            yield from _divisors(base)
+        case Negation(inside) | Call(_, inside):
+            yield from _divisors(inside)
+        case Sum(several) | Product(several):
+            for part in several:
+                yield from _divisors(part)
+        case _:
+            pass
+
+
+def _factors(field: ParameterField, element: Scalar) -> Iterator[Scalar]:
+    if field.constant(element) is None:
+        for polynomial, _ in field.factored(element).factors:
+            yield field.of_polynomial(polynomial)
+
+
+def _with_names(base: ParameterField, field: ParameterField, case: Case) -> ParameterDomain:
+    """The domain of the case, what it excludes, and what its regimes say about the names.
+
+    Frequencies are positive, roots of one factor are in their order, and none of them is a
+    root of another factor: the resultant of the two does not vanish on the case.
+    """
+    known = [
+        *case.domain.conditions,
+        *_with_equations_put_in(base, case),
+        *(
+            Comparison(e.polynomials[0], "!=")
+            for e in case.branch.exceptional
+            if e.fate == "excluded" and len(e.polynomials) == 1
+        ),
+    ]
+    conditions = [Comparison(base.into(field, c.element), c.relation) for c in known]
+    for mode in case.modes:
+        conditions += _facts(field, mode)
+        for other in case.modes:
+            if other is not mode and mode.regime.kind in _SIGNS:
+                conditions += _apart(base, field, mode, other)
+    for quantity in case.quantities:
+        formula = quantity.formula
+        if quantity.origin != "roots" and formula is not None and not _has_root(formula):
+            value = rational_value(formula, field, Place())
+            sign = ParameterDomain(field, tuple(conditions)).sign_of(value).sign
+            if sign in ("positive", "negative"):
+                symbol = field.symbol(quantity.name)
+                conditions.append(Comparison(symbol if sign == "positive" else -symbol, ">"))
+        elif quantity.origin != "roots":
+            conditions.append(Comparison(field.symbol(quantity.name), ">"))
+    return ParameterDomain(field, tuple(dict.fromkeys(conditions)))
+
+
+def _with_equations_put_in(base: ParameterField, case: Case) -> Iterator[Comparison]:
+    """The conditions once more, with the equations among them solved for a parameter."""
+    for equation in case.domain.conditions:
+        if equation.relation != "=":
+            continue
+        for name in base.parameters:
+            value = linear_solution(base, equation.element, name)
+            if (
+                value is None
+                or not case.domain.sign_of(base.derivative(equation.element, name)).never_zero
+            ):
+                continue
+            for condition in case.domain.conditions:
+                if condition != equation:
+                    yield Comparison(
+                        base.substituted(condition.element, {name: value}), condition.relation
+                    )
+
+
+_SIGNS = {"decaying": -1, "real roots": 1}
+
+
+def _facts(field: ParameterField, mode: Mode) -> Iterator[Comparison]:
+    """Signs of the names of one mode, and of their differences."""
+    names = [field.symbol(name) for name in mode.names]
+    match mode.regime.kind:
+        case "circular" | "hyperbolic" | "quartet":
+            yield from (Comparison(name, ">") for name in names)
+        case "decaying":
+            yield from (Comparison(name, ">") for name in names)
+            yield from (Comparison(a - b, ">") for a, b in combinations(names, 2))
+        case "real roots":
+            yield from (Comparison(a - b, ">") for a, b in combinations(names, 2))
+        case "squares":
+            yield from (Comparison(name, ">") for name in names)
+            if len(set(mode.regime.signs)) == 1:
+                yield from (Comparison(b - a, ">") for a, b in combinations(names, 2))
+        case "root and pair":
+            yield Comparison(names[2], ">")
+        case _:
+            pass
+
+
+def _apart(
+    base: ParameterField, field: ParameterField, mode: Mode, other: Mode
+) -> Iterator[Comparison]:
+    """q(lambda) is not 0 for the named roots lambda of a mode and the factor q of another.
+
+    So where q has named roots too, no difference of the two vanishes.
+    """
+    sign = _SIGNS[mode.regime.kind]
+    for name in mode.names:
+        root = field.symbol(name) * field.scalar(sign)
+        if other.regime.kind in _SIGNS:
+            turn = field.scalar(_SIGNS[other.regime.kind])
+            yield from (Comparison(root - turn * field.symbol(n), "!=") for n in other.names)
+            continue
+        value = field.domain.zero
+        for c in other.factor.polynomial:
+            value = value * root + base.into(field, c)
+        yield Comparison(value, "!=")
+
+
+def _has_root(expression: Expression) -> bool:
+    return isinstance(expression, Call) or (
+        isinstance(expression, Quotient | Product | Sum) and any(map(_has_root, _parts(expression)))
+    )
+
+
+def _parts(expression: Quotient | Product | Sum) -> tuple[Expression, ...]:
+    match expression:
+        case Quotient(above, below):
+            return (above, below)
+        case Product(several) | Sum(several):
+            return several
