@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass
 
 from closedform.algebra.branches import Branch
+from closedform.algebra.domain import ParameterDomain
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.model.parametric import ParametricModel
@@ -16,7 +17,13 @@ from closedform.response.parametric.modes import Mode, perfect_root
 from closedform.response.parametric.quantities import Letters, Quantity, SquareRoot
 from closedform.response.parametric.rewriting import Rewriting, rewriting_for
 
-__all__ = ["Shortening", "rewritings_by_root", "trade_shortenings", "user_shortenings"]
+__all__ = [
+    "Shortening",
+    "rewritings_by_root",
+    "sound_rewritings",
+    "trade_shortenings",
+    "user_shortenings",
+]
 
 
 @dataclass(frozen=True)
@@ -72,3 +79,20 @@ def rewritings_by_root(
         square = quantity.definition.square
         if writing.names_in(square) <= set(field.parameters):
             yield from rewriting_for(writing, quantity.name, square, 2)
+
+
+def sound_rewritings(
+    domain: ParameterDomain, rewritings: Iterable[Rewriting]
+) -> tuple[Rewriting, ...]:
+    """Return the rewritings that divide by nothing that may vanish, and not by the name itself.
+
+    m = c/(2 delta) is no way to write a mass: without damping both are zero.  `domain` is over
+    the writing field, with the names in it.
+    """
+    found = []
+    for rewriting in rewritings:
+        below = domain.field.of_polynomial(rewriting.replacement.denom)
+        by_itself = rewriting.power == 1 and rewriting.name in domain.field.names_in(below)
+        if not by_itself and domain.sign_of(below).never_zero:
+            found.append(rewriting)
+    return tuple(found)

@@ -13,7 +13,6 @@ from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import Regime
 from closedform.model.parametric import ParametricModel
 from closedform.notation.expression import operations
-from closedform.notation.rational_formula import rational_formula
 from closedform.notation.shown import FormulaColumn, FormulaMatrix
 from closedform.response.parametric.case import Case, WrittenQuantity
 from closedform.response.parametric.closed_form import closed_form, fronted_matrix
@@ -30,6 +29,7 @@ from closedform.response.parametric.quantities import (
     Value,
 )
 from closedform.response.parametric.rewriting import (
+    Extent,
     Rewriting,
     rewriting_for,
     rewritten,
@@ -39,6 +39,7 @@ from closedform.response.parametric.selection import case_conditions
 from closedform.response.parametric.shortenings import (
     Shortening,
     rewritings_by_root,
+    sound_rewritings,
     trade_shortenings,
     user_shortenings,
 )
@@ -46,13 +47,16 @@ from closedform.response.parametric.terms import Term
 
 __all__ = ["written_case"]
 
+Rows = tuple[tuple[Term, ...], ...]
+"""The terms of many functions."""
+
 
 @dataclass(frozen=True)
 class _Functions:
     """The functions of a case as terms: solution and outputs, then e^(At) row by row."""
 
-    results: tuple[tuple[Term, ...], ...]
-    entries: tuple[tuple[Term, ...], ...]
+    results: Rows
+    entries: Rows
 
 
 def written_case(
@@ -79,32 +83,33 @@ def written_case(
     shortenings = (*user_shortenings(model, branch), *trade_shortenings(field, modes, letters))
     writing = _writing_field(model, modes, shortenings)
     quantities = [q for mode in modes for q in quantities_of(field, writing, mode)]
-    rewritings = [
-        r
-        for s in shortenings
-        for r in rewriting_for(writing, s.name, field.into(writing, s.value), s.power)
-    ]
+    lifted = _lifted(field, writing, domain, quantities, shortenings)
+    rewritings = sound_rewritings(
+        lifted,
+        (
+            r
+            for s in shortenings
+            for r in rewriting_for(writing, s.name, field.into(writing, s.value), s.power)
+        ),
+    )
     terms = _functions(field, writing, modes, branch.exponential, functions)
-    terms = _under_equations(writing, domain, modes, terms)
     if like is None:
-        own = [r for q in quantities for r in rewritings_by_root(field, writing, q)]
+        own = (r for q in quantities for r in rewritings_by_root(field, writing, q))
         costs = {s.name: operations(s.formula(field)) for s in shortenings}
         costs |= dict.fromkeys((q.name for q in quantities), 0)
-        best = shortest(writing, terms.results, [*rewritings, *own], costs, model.time)
-        used = best.used
+        candidates = [*rewritings, *sound_rewritings(lifted, own)]
+        used = shortest(writing, terms.results, candidates, costs, model.time).used
     else:
         known = {(name, parameter): extent for name, parameter, extent in like.abbreviated}
         used = tuple(
             (r, known[r.name, r.parameter]) for r in rewritings if (r.name, r.parameter) in known
         )
-    results = rewritten(writing, terms.results, used)
-    entries = rewritten(writing, terms.entries, used)
+    results, entries = _shortest_under_equations(writing, domain, modes, terms, used, model.time)
     formulas = [closed_form(writing, function, model.time) for function in results]
     rows = [entries[i * n : (i + 1) * n] for i in range(n)]
     transition = tuple(
         tuple(closed_form(writing, function, model.time) for function in row) for row in rows
     )
-    lifted = _lifted(field, writing, domain, quantities)
     put = [r for r, _ in used if r in rewritings]
     abbreviations = [s for s in shortenings if s.name in {r.name for r in put}]
     written = [WrittenQuantity(s.name, s.formula(field), None, s.origin) for s in abbreviations]
@@ -164,49 +169,51 @@ def _functions(
     return _Functions(results, terms(exponential))
 
 
-def _under_equations(
-    writing: ParameterField, domain: ParameterDomain, modes: Sequence[Mode], terms: _Functions
-) -> _Functions:
-    """Use the equation D = 0 of a double root to leave out a parameter, if that is shorter."""
+def _shortest_under_equations(
+    writing: ParameterField,
+    domain: ParameterDomain,
+    modes: Sequence[Mode],
+    terms: _Functions,
+    used: Sequence[tuple[Rewriting, Extent]],
+    time: str,
+) -> tuple[Rows, Rows]:
+    """Results and entries with the abbreviations that are used.
+
+    For a double root the equation D = 0 may leave out a parameter, if that is shorter.
+    """
     field = domain.field
-    if not any(mode.regime.kind == "double" for mode in modes):
-        return terms
-    forms = [terms]
-    for condition in domain.conditions:
-        if condition.relation != "=":
-            continue
-        for name in field.parameters:
-            solved = linear_solution(field, condition.element, name)
-            if solved is not None:
-                put = {name: field.into(writing, solved)}
-                forms.append(
-                    _Functions(
-                        tuple(_put_in(writing, function, put) for function in terms.results),
-                        tuple(_put_in(writing, function, put) for function in terms.entries),
-                    )
-                )
-    return min(forms, key=lambda f: _length(writing, f))
+    puts: list[dict[str, Scalar]] = [{}]
+    if any(mode.regime.kind == "double" for mode in modes):
+        for condition in domain.conditions:
+            if condition.relation == "=":
+                puts += [
+                    {name: field.into(writing, solved)}
+                    for name in field.parameters
+                    if (solved := linear_solution(field, condition.element, name)) is not None
+                    and domain.sign_of(field.of_polynomial(solved.denom)).never_zero
+                ]
+    forms = []
+    for put in puts:
+        results = rewritten(writing, _put_in(writing, terms.results, put), used)
+        length = sum(operations(closed_form(writing, f, time)) for f in results)
+        forms.append((length, put, results))
+    _, put, results = min(forms, key=lambda form: form[0])
+    return results, rewritten(writing, _put_in(writing, terms.entries, put), used)
 
 
-def _put_in(
-    writing: ParameterField, function: Sequence[Term], put: dict[str, Scalar]
-) -> tuple[Term, ...]:
+def _put_in(writing: ParameterField, functions: Rows, put: dict[str, Scalar]) -> Rows:
+    if not put:
+        return functions
     return tuple(
-        replace(
-            term,
-            amount=writing.substituted(term.amount, put),
-            rate=writing.substituted(term.rate, put),
+        tuple(
+            replace(
+                term,
+                amount=writing.substituted(term.amount, put),
+                rate=writing.substituted(term.rate, put),
+            )
+            for term in function
         )
-        for term in function
-    )
-
-
-def _length(writing: ParameterField, terms: _Functions) -> int:
-    return sum(
-        operations(rational_formula(writing, term.amount))
-        for function in terms.results
-        for term in function
-        if term.amount
+        for function in functions
     )
 
 
@@ -226,10 +233,13 @@ def _lifted(
     writing: ParameterField,
     domain: ParameterDomain,
     quantities: Sequence[Quantity],
+    shortenings: Sequence[Shortening],
 ) -> ParameterDomain:
     """The domain over the writing field, with the names that are known to be positive."""
     conditions = [Comparison(field.into(writing, c.element), c.relation) for c in domain.conditions]
-    conditions += [Comparison(writing.symbol(q.name), ">") for q in quantities if q.positive]
+    names = [q.name for q in quantities if q.positive]
+    names += [s.name for s in shortenings if domain.sign_of(s.value).sign == "positive"]
+    conditions += [Comparison(writing.symbol(name), ">") for name in names]
     return ParameterDomain(writing, tuple(conditions))
 
 
