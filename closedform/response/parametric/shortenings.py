@@ -58,7 +58,7 @@ def trade_shortenings(
     for k, mode in enumerate(damped, start=1):
         number = None if len(damped) == 1 else k
         rate = -mode.factor.roots.centre
-        if len(field.names_in(rate)) > 1:
+        if len(field.names_in(rate)) > 1 and not _is_bare_product(rate):
             yield Shortening(letters.take("delta", number), rate, 1, "trade")
         square = mode.factor.p.nth(0)
         if len(field.names_in(square)) > 1 and perfect_root(field, square) is None:
@@ -69,6 +69,11 @@ def trade_shortenings(
     for k, value in enumerate(constants, start=1):
         number = None if len(constants) == 1 else k
         yield Shortening(letters.take("tau", number), value, 1, "trade")
+
+
+def _is_bare_product(element: Scalar) -> bool:
+    """Whether an element is written as short as a name: zeta omega_n, without a number."""
+    return bool(element.denom == 1 and len(element.numer) == 1 and element.numer.LC == 1)
 
 
 def rewritings_by_root(
