@@ -212,7 +212,7 @@ def test_a_record_is_as_the_schema_says(case: str) -> None:
 @pytest.mark.parametrize("path", STARTERS, ids=[path.stem for path in STARTERS])
 def test_the_record_of_a_starter_is_as_the_schema_says(path: Path) -> None:
     response = closedform.respond(closedform.load(path))
-    record = record_of(response, verify(response))
+    record = record_of(response, closedform.verify(response))
     VALIDATOR.validate(json.loads(json.dumps(record)))
 
 

@@ -12,8 +12,8 @@ from collections.abc import Iterator
 from fractions import Fraction
 from random import Random
 
-from closedform.algebra.branches import Branch
-from closedform.algebra.domain import Comparison
+from closedform.algebra.branches import Branch, Exceptional
+from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.exceptional import discriminant_of
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
@@ -24,6 +24,8 @@ from closedform.notation.rational import rational_value
 from closedform.response.parametric.case import Case
 from closedform.response.parametric.conditions import WrittenComparison
 from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.parametric.cells import cell_fault
+from closedform.verification.parametric.conditions import follows, is_empty
 from closedform.verification.parametric.identities import vanishes_on
 from closedform.verification.record import Check
 
@@ -54,15 +56,41 @@ def cover_check(response: ParametricResponse) -> Check:
                     if not vanishes_on(target, left):
                         how = f"{polynomial} does not vanish on branch {target.number}"
                         return Check(item, "refuted", how)
-            elif exceptional.argument is None and not exceptional.contradicted:
+            elif not _is_excluded(response.model.field, branch, exceptional):
                 return Check(item, "refuted", f"no reason excludes {exceptional.polynomials[0]}")
+        fault = cell_fault(response, branch)
+        if fault is not None:
+            return Check(item, "refuted", fault)
     split = (
-        "on every branch either none of its denominators and discriminants vanishes, and its "
-        "formulas hold, or one does, and that is excluded by the domain or is a branch of its own"
+        "on every branch no denominator or discriminant vanishes, and its formulas hold, or one "
+        "does, and that is excluded by the domain or is a branch of its own; each way in which "
+        "the signs that tell its cases apart may combine has one case"
     )
     if open_ones:
         split += f", but for {open_ones} listed as not covered"
     return Check(item, "proved", split)
+
+
+def _is_excluded(field: ParameterField, branch: Branch, exceptional: Exceptional) -> bool:
+    """Whether the polynomials vanish together nowhere on a branch, for the reason that is given.
+
+    The sign that was given as reason is that of one of them, and is found once more;
+    conditions that contradict each other follow from the domain where they vanish.
+    """
+    left = [field.substituted(p, branch.values) for p in exceptional.polynomials]
+    where = branch.domain.narrowed(*(Comparison(p, "=") for p in left))
+    argument = exceptional.argument
+    if argument is None:
+        contradicted = exceptional.contradicted
+        reason = ParameterDomain(field, contradicted).contradiction() is not None and all(
+            follows(field, where, c) for c in contradicted
+        )
+    elif len(left) == 1 and branch.relation is None:
+        same = argument.element in (*exceptional.polynomials, *left)
+        reason = same and branch.domain.sign_of(argument.element).sign == argument.sign
+    else:  # it may be about what is left of one equation where another is put in
+        reason = True
+    return reason and is_empty(field, where)
 
 
 def _must_not_vanish(field: ParameterField, branch: Branch) -> Iterator[Scalar]:
@@ -107,8 +135,7 @@ def cover_points_check(response: ParametricResponse) -> Check:
     return Check(
         item,
         "proved",
-        f"the conditions as written were read back and decided at {len(points)} points of the "
-        "domain, some of them on exceptional sets: exactly one case applies"
+        f"exactly one at each of {len(points)} points, many on exceptional sets"
         + ("" if complete else ", or none where that is said"),
     )
 

@@ -74,9 +74,8 @@ def join_check(response: ParametricResponse, case: Case) -> Iterator[Check]:
         yield Check(
             _ITEM,
             "enclosed",
-            f"at {point} the formulas of case {neighbour.number + 1} were evaluated with {moved} "
-            f"moved by 2^-{STEPS[0]}, 2^-{STEPS[1]} and 2^-{STEPS[2]} of itself: the differences "
-            "from those of this case shrink in proportion",
+            f"at {point}, with {moved} moved by 2^-{STEPS[0]}, 2^-{STEPS[1]}, 2^-{STEPS[2]} of "
+            f"itself, the formulas of case {neighbour.number + 1} differ in proportion",
         )
 
 

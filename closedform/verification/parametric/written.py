@@ -5,15 +5,25 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 from fractions import Fraction
 
-from flint import arb, arb_mat
+from flint import arb, arb_mat, ctx
 
 from closedform.algebra.enclosure import ball_of
+from closedform.algebra.parameter_field import ParameterField
 from closedform.notation import enclose
 from closedform.notation.expression import Expression, Product
 from closedform.response.parametric.case import Case
 from closedform.response.parametric.points import Point, border_points, case_points
 from closedform.response.parametric.response import ParametricResponse
-from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared
+from closedform.verification.comparison import (
+    AGREED,
+    LIMIT_BITS,
+    START_BITS,
+    Finding,
+    Pair,
+    check_of,
+    compared,
+)
+from closedform.verification.parametric.defined import facts_of_names
 from closedform.verification.parametric.values import (
     NamesAt,
     enclosed_matrix,
@@ -40,16 +50,46 @@ def formula_check(response: ParametricResponse, case: Case) -> Check:
         return Check(_ITEM, "not attempted", "no point of this case was found to put in")
     parsed = {name: read_back(model, case, formula) for name, formula in _written(response, case)}
     border = border_points(model.field, case)
-    findings = (_finding(response, case, parsed, point) for point in (*points, *border))
+    findings = (
+        finding
+        for point in (*points, *border)
+        for finding in (
+            _names_finding(response, case, point),
+            _finding(response, case, parsed, point),
+        )
+    )
     where = "; ".join(map(str, points))
-    also = f", and at {len(border)} more where one parameter is zero" if border else ""
+    also = f" and {len(border)} more with a zero" if border else ""
     return check_of(
         _ITEM,
         findings,
-        f"{len(parsed)} formulas and the definitions of their names were read back from their "
-        f"text; they agree with the exponential of A by ball arithmetic {AGREED} at "
-        f"{len(points)} points of the case ({where}){also}, at two instants each",
+        f"{len(parsed)} formulas and the definitions of their names, read back from their text, "
+        f"agree with the exponential of A by ball arithmetic {AGREED} at {len(points)} points of "
+        f"the case ({where}){also}, at two instants each",
     )
+
+
+def _names_finding(response: ParametricResponse, case: Case, point: Point) -> Finding:
+    """The names have the signs and the order that are said of them."""
+    names = {q.name for q in case.quantities}
+    if missing := [name for mode in case.modes for name in mode.names if name not in names]:
+        return Finding("refuted", f"{missing[0]} has no definition")
+    field = ParameterField(parameters=(*response.model.field.parameters, *sorted(names)))
+    facts = [fact for mode in case.modes for fact in facts_of_names(field, mode)]
+    names_at = NamesAt(response.model, case, point)
+    bits = START_BITS
+    while True:
+        with ctx.workprec(bits):
+            known = names_at.balls()
+            values = [field.enclose_at(fact.element, known) for fact in facts]
+            for fact, value in zip(facts, values, strict=True):
+                if value <= 0:
+                    return Finding("refuted", f"{fact.element} is not positive at {point}")
+            if all(value > 0 for value in values):
+                return Finding("enclosed")
+        if bits >= LIMIT_BITS:
+            return Finding("not attempted", f"the signs of names are not settled at {point}")
+        bits *= 2
 
 
 def _finding(

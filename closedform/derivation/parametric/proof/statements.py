@@ -78,9 +78,8 @@ def prove_case_statements(response: ParametricResponse, steps: Sequence[Step]) -
     return Check(
         "statements of the derivation",
         "enclosed",
-        f"{len(said)} statements were evaluated from what is printed, at {len(trials)} points of "
-        "the cases they are made for; they agree with the model and the matrix exponential of "
-        "ball arithmetic",
+        f"{len(said)} statements, evaluated as printed at {len(trials)} points of their cases, "
+        "agree with the model and with the exponential of A by ball arithmetic",
     )
 
 
