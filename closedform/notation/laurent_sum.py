@@ -8,46 +8,26 @@ are written in the same way.  Long sums are tried in few forms only.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Iterator, Sequence
-from dataclasses import dataclass, replace
-from dataclasses import field as field_of
+from collections.abc import Iterable, Iterator, Sequence
+from dataclasses import replace
 from fractions import Fraction
-from functools import cached_property, lru_cache
+from functools import lru_cache
 from itertools import chain, combinations
 from math import gcd, isqrt, lcm
-from operator import attrgetter
 
 from closedform.algebra.field import rational
 from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
 from closedform.algebra.polynomial_factors import irreducible_factors
-from closedform.notation.choice import places_of, shortest_of
-from closedform.notation.expression import (
-    ONE,
-    Expression,
-    Name,
-    Negation,
-    Number,
-    Power,
-    Product,
-    Quotient,
-    power_of,
-    product,
+from closedform.notation.weight import (
+    Weight,
+    monomial_weight,
+    power_of_weight,
+    product_of_weights,
+    shortest,
+    sum_of_weights,
 )
-from closedform.notation.terms import sum_of
 
-__all__ = [
-    "Laurent",
-    "Weight",
-    "laurent_of",
-    "monomial_weight",
-    "ordered",
-    "power_of_weight",
-    "product_of_weights",
-    "shortest",
-    "shortest_sum",
-    "sum_of_weights",
-    "written",
-]
+__all__ = ["Laurent", "laurent_of", "ordered", "shortest_sum"]
 
 Laurent = tuple[tuple[tuple[int, ...], Fraction], ...]
 """(exponents, coefficient) of every term, coefficients not 0, in the order of printing."""
@@ -56,121 +36,6 @@ FULL = 8
 """Up to this number of terms all groupings are tried."""
 GROUPED = 40
 """Up to this number of terms one grouping is tried at each step."""
-
-
-@dataclass(frozen=True)
-class Weight:
-    """number · above / below, the number with the sign: a value ready to take more factors.
-
-    The factors are no products and not 1; `cost` counts the operations inside of them.
-    """
-
-    number: Fraction
-    above: tuple[Expression, ...] = ()
-    below: tuple[Expression, ...] = ()
-    cost: int = field_of(default=0, compare=False)
-
-    @cached_property
-    def size(self) -> int:
-        """The operations of the value without its sign."""
-        above = len(self.above) + (abs(self.number.numerator) != 1)
-        below = len(self.below) + (self.number.denominator != 1)
-        return self.cost + max(above - 1, 0) + below
-
-    @property
-    def length(self) -> int:
-        """The operations of the value written as one term."""
-        if self.number > 0 or abs(self.number.numerator) != 1 or not self.above:
-            return self.size
-        return self.size + 1
-
-    @cached_property
-    def term(self) -> Expression:
-        """The value written as one term, its sign outside."""
-        return written(self)
-
-
-def written(
-    weight: Weight, factors: Sequence[Expression] = (), divisors: Sequence[Expression] = ()
-) -> Expression:
-    """Return weight · factors / divisors as one term, its sign outside."""
-    above = _product(abs(weight.number.numerator), weight.above, factors)
-    below = _product(weight.number.denominator, weight.below, divisors)
-    if below == ONE:
-        term = above
-    elif isinstance(above, Number) and isinstance(below, Number):
-        term = Number(above.value / below.value)
-    else:
-        term = Quotient(above, below)
-    return Negation(term) if weight.number < 0 else term
-
-
-def _product(
-    number: int, inside: tuple[Expression, ...], others: Sequence[Expression]
-) -> Expression:
-    front = () if number == 1 else (Number(Fraction(number)),)
-    if others:
-        return product([*front, *inside, *others])
-    factors = front + inside
-    if len(factors) > 1:
-        return Product(factors)
-    return factors[0] if factors else ONE
-
-
-def shortest(field: ParameterField, forms: Iterable[Weight]) -> Weight:
-    """Return the form with the fewest operations; of equals, what a person would write."""
-    return shortest_of(forms, _term, _places(field), _length)
-
-
-_term: Callable[[Weight], Expression] = attrgetter("term")
-_length: Callable[[Weight], int] = attrgetter("length")
-
-
-@lru_cache(maxsize=64)
-def _places(field: ParameterField) -> dict[str, int]:
-    return places_of(field.parameters)
-
-
-def product_of_weights(weights: Iterable[Weight]) -> Weight:
-    """Return the product; single parameters come before sums, else the order is kept."""
-    number, cost = Fraction(1), 0
-    above: list[Expression] = []
-    below: list[Expression] = []
-    for weight in weights:
-        number *= weight.number
-        cost += weight.cost
-        above += weight.above
-        below += weight.below
-    above.sort(key=_is_long)
-    below.sort(key=_is_long)
-    return Weight(number, tuple(above), tuple(below), cost)
-
-
-def power_of_weight(weight: Weight, exponent: int) -> Weight:
-    """Return a weight to a positive integer power."""
-    if exponent == 1:
-        return weight
-    above, below = (
-        tuple(_raised(factor, exponent) for factor in factors)
-        for factors in (weight.above, weight.below)
-    )
-    bases = sum(not _is_power(factor) for factor in (*weight.above, *weight.below))
-    return Weight(weight.number**exponent, above, below, weight.cost + bases)
-
-
-def _is_power(factor: Expression) -> bool:
-    return isinstance(factor, Power) and isinstance(factor.exponent, Number)
-
-
-def _raised(factor: Expression, exponent: int) -> Expression:
-    if isinstance(factor, Power) and isinstance(factor.exponent, Number):
-        return Power(factor.base, Number(factor.exponent.value * exponent))
-    return power_of(factor, exponent)
-
-
-def _is_long(factor: Expression) -> bool:
-    base = factor.base if isinstance(factor, Power) else factor
-    return not isinstance(base, Name)
 
 
 @lru_cache(maxsize=4096)
@@ -189,39 +54,45 @@ def ordered(terms: Iterable[tuple[tuple[int, ...], Fraction]]) -> Laurent:
     )
 
 
-def monomial_weight(field: ParameterField, exponents: Sequence[int], number: Fraction) -> Weight:
-    """Return number · product of parameter^exponent."""
-    pairs = list(zip(field.parameters, exponents, strict=True))
-    above = tuple(power_of(Name(n), e) for n, e in pairs if e > 0)
-    below = tuple(power_of(Name(n), -e) for n, e in pairs if e < 0)
-    return Weight(number, above, below, sum(abs(e) > 1 for e in exponents))
-
-
 @lru_cache(maxsize=65536)
 def shortest_sum(field: ParameterField, terms: Laurent) -> Weight:
     """Return a sum of at least one term in its shortest form."""
     if len(terms) == 1:
         return monomial_weight(field, *terms[0])
-    flat = _sum_of_groups(field, [(term,) for term in terms])
     exponents, number = _shared(terms)
-    if any(exponents) or number != 1:
-        return shortest(field, [_pulled(field, terms, exponents, number), flat])
-    forms = [*_fractions(field, terms), *_products(field, terms), *_squares(field, terms)]
-    forms += [_sum_of_groups(field, groups) for groups in _groupings(terms)]
-    return shortest(field, [flat, *forms])
+    forms: list[Weight]
+    shared = any(exponents) or number != 1
+    if shared:
+        forms, groupings = [_pulled(field, terms, exponents, number)], []
+    else:
+        forms = [*_fractions(field, terms), *_products(field, terms), *_squares(field, terms)]
+        groupings = [
+            [shortest_sum(field, group) for group in groups] for groups in _groupings(terms)
+        ]
+    sizes = [sum(weight.size for weight in weights) + len(weights) - 1 for weights in groupings]
+    size = _flat_size(terms)
+    # a sign is one operation more: what is longer by two is not written
+    most = min([size, *sizes, *(form.length for form in forms)]) + 1
+    forms += [sum_of_weights(w) for w, n in zip(groupings, sizes, strict=True) if n <= most]
+    if size <= most:
+        flat = sum_of_weights([monomial_weight(field, *term) for term in terms])
+        forms.insert(1 if shared else 0, flat)
+    return shortest(field, forms)
 
 
-def _sum_of_groups(field: ParameterField, groups: Sequence[Laurent]) -> Weight:
-    return sum_of_weights([shortest_sum(field, group) for group in groups])
-
-
-def sum_of_weights(weights: Sequence[Weight]) -> Weight:
-    """Return a sum of at least two values, its sign outside where all terms are negative."""
-    total = sum_of([weight.term for weight in weights])
-    cost = sum(weight.size for weight in weights) + len(weights) - 1
-    if isinstance(total, Negation):
-        return Weight(Fraction(-1), (total.operand,), cost=cost)
-    return Weight(Fraction(1), (total,), cost=cost)
+def _flat_size(terms: Laurent) -> int:
+    """The operations of a sum written term by term, without a sign of all of it."""
+    size = len(terms) - 1
+    for exponents, number in terms:
+        above = int(abs(number.numerator) != 1)
+        for e in exponents:
+            if e > 0:
+                above += 1
+                size += e > 1
+            elif e:
+                size += 1 + (e < -1)
+        size += max(above - 1, 0) + (number.denominator != 1)
+    return size
 
 
 def _shared(terms: Laurent) -> tuple[tuple[int, ...], Fraction]:

@@ -19,28 +19,28 @@ from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import Factored, ParameterField, ParameterPolynomial
 from closedform.algebra.polynomial_factors import irreducible_factors
 from closedform.notation.expression import ZERO, Expression
-from closedform.notation.laurent_sum import (
-    Laurent,
+from closedform.notation.laurent_sum import Laurent, laurent_of, ordered, shortest_sum
+from closedform.notation.terms import opened
+from closedform.notation.weight import (
     Weight,
-    laurent_of,
     monomial_weight,
-    ordered,
     power_of_weight,
     product_of_weights,
     shortest,
-    shortest_sum,
     sum_of_weights,
     written,
 )
-from closedform.notation.terms import opened
 
-__all__ = ["rational_formula", "taken_apart", "weighted_parts", "weighted_rational"]
+__all__ = ["rational_formula", "taken_apart", "weight_of", "weighted_parts", "weighted_rational"]
 
 EXPANDED = 60
 """Products that may have more terms than this are not multiplied out."""
 
 DIVIDED = 12
 """Numerators with more terms than this are not divided by factors of the denominator."""
+
+DISTRIBUTED = 18
+"""Sums with more terms than this take no other factors into their terms."""
 
 
 def rational_formula(field: ParameterField, element: Scalar) -> Expression:
@@ -72,7 +72,7 @@ def weighted_parts(
     divisors: Sequence[Expression] = (),
 ) -> Expression:
     """Return the same for a value that is taken apart already."""
-    return opened(written(_weight(field, value), factors, divisors))
+    return opened(written(weight_of(field, value), factors, divisors))
 
 
 @lru_cache(maxsize=16384)
@@ -102,7 +102,7 @@ Powers = tuple[tuple[ParameterPolynomial, int], ...]
 
 
 @lru_cache(maxsize=16384)
-def _weight(field: ParameterField, value: Factored) -> Weight:
+def weight_of(field: ParameterField, value: Factored) -> Weight:
     """Return the shortest form of a value."""
     exponents = [0] * len(field.parameters)
     long: list[tuple[ParameterPolynomial, int]] = []
@@ -118,6 +118,8 @@ def _weight(field: ParameterField, value: Factored) -> Weight:
     for single, number, lower in _denominators(exponents, value.content, below):
         forms.append(_factored(field, monomial_weight(field, single, number), above, lower))
         for chosen, whole in _expansions(above):
+            if len(whole) > DISTRIBUTED and len(chosen) == 1:
+                continue
             if any(single) or abs(number) != 1 or len(chosen) > 1 or chosen[0][1] > 1:
                 rest = tuple(pair for pair in above if pair not in chosen)
                 inner = shortest_sum(field, _times(whole, single, number))
@@ -156,16 +158,23 @@ def _divisions(
     for factor, _ in below:
         whole, remainder = _divided(upper, factor)
         if whole and remainder:
-            front = field.product_of(replace(value, factors=others))
-            once = 1 / field.of_polynomial(factor)
-            parts = [field.of_polynomial(part) for part in (whole, remainder)]
-            yield _sum_of(field, [part * front for part in parts])
-            outside = _weight(field, taken_apart(front / once))
-            yield product_of_weights([outside, _sum_of(field, [part * once for part in parts])])
+            front = replace(value, factors=others)
+            once = Factored(Fraction(1), ((factor, -1),))
+            parts = [taken_apart(field.of_polynomial(part)) for part in (whole, remainder)]
+            yield sum_of_weights([weight_of(field, _joined(part, front)) for part in parts])
+            outside = weight_of(field, _joined(front, Factored(Fraction(1), ((factor, 1),))))
+            inside = sum_of_weights([weight_of(field, _joined(part, once)) for part in parts])
+            yield product_of_weights([outside, inside])
 
 
-def _sum_of(field: ParameterField, parts: Sequence[Scalar]) -> Weight:
-    return sum_of_weights([_weight(field, taken_apart(part)) for part in parts])
+def _joined(first: Factored, second: Factored) -> Factored:
+    """Return a product, simple factors first."""
+    exponents = dict(first.factors)
+    for factor, exponent in second.factors:
+        exponents[factor] = exponents.get(factor, 0) + exponent
+    powers = [(factor, exponent) for factor, exponent in exponents.items() if exponent]
+    powers.sort(key=lambda pair: _simplicity(laurent_of(pair[0])))
+    return Factored(first.content * second.content, tuple(powers))
 
 
 def _divided(

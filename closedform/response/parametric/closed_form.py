@@ -10,14 +10,15 @@ subtraction of exponents.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
-from functools import lru_cache
+from functools import cached_property, lru_cache
+from operator import attrgetter
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.lowest_terms import multiplied_out
 from closedform.algebra.parameter_field import Factored, ParameterField
-from closedform.notation.choice import places_of, shortest_formula
+from closedform.notation.choice import places_of, shortest_formula, shortest_of
 from closedform.notation.expression import (
     ZERO,
     Call,
@@ -27,7 +28,12 @@ from closedform.notation.expression import (
     operations,
     power_of,
 )
-from closedform.notation.rational_formula import taken_apart, weighted_parts, weighted_rational
+from closedform.notation.rational_formula import (
+    taken_apart,
+    weight_of,
+    weighted_parts,
+    weighted_rational,
+)
 from closedform.notation.terms import opened, sum_of
 from closedform.response.parametric.fronts import MINUS, UNIT, fronts_of, over
 from closedform.response.parametric.terms import (
@@ -213,18 +219,57 @@ def _written_group(field: ParameterField, group: _Group, time: str) -> Expressio
     outside = [] if group.exponential is None else [group.exponential]
     if len(group.parts) == 1:
         return _written_part(field, group.parts[0], outside, time)
-    forms = []
     least = min(part.power for part in group.parts)
     lowered = replace(
         group, parts=tuple(replace(part, power=part.power - least) for part in group.parts)
     )
     outside = [power_of(Name(time), least), *outside] if least else outside
+    forms = []
     for front in fronts_of([part.amount for part in group.parts]):
-        divided = _divided(lowered, front)
-        inside = sum_of([_written_part(field, part, [], time) for part in divided.parts])
-        bare = front == UNIT and not outside
-        forms.append(inside if bare else _product(field, front, outside, inside))
-    return shortest_formula(forms, places_of(field.parameters))
+        inside = _sum_of_parts(field, _divided(lowered, front).parts, time)
+        forms.append(_Fronted(field, front, tuple(outside), *inside))
+    best = shortest_of(forms, _formula, places_of(field.parameters), _length)
+    return best.formula
+
+
+@lru_cache(maxsize=16384)
+def _sum_of_parts(
+    field: ParameterField, parts: tuple[_Part, ...], time: str
+) -> tuple[Expression, int]:
+    """Return a sum, and its operations without a sign outside of it."""
+    total = sum_of([_written_part(field, part, [], time) for part in parts])
+    return total, operations(total.operand if isinstance(total, Negation) else total)
+
+
+@dataclass(frozen=True)
+class _Fronted:
+    """front · outside · (a sum of `size` operations), not written yet."""
+
+    field: ParameterField
+    front: Factored
+    outside: tuple[Expression, ...]
+    inside: Expression
+    size: int
+
+    @cached_property
+    def formula(self) -> Expression:
+        if self.front == UNIT and not self.outside:
+            return opened(self.inside)
+        return _product(self.field, self.front, self.outside, self.inside)
+
+    @cached_property
+    def length(self) -> int:
+        """The operations of the formula, counted without writing it."""
+        if self.front in (UNIT, MINUS) and not self.outside:
+            return operations(self.formula)
+        negative = isinstance(self.inside, Negation)
+        weight = weight_of(self.field, over(self.front, MINUS) if negative else self.front)
+        cost = self.size + sum(map(operations, self.outside))
+        return weight.length_with(len(self.outside) + 1, cost)
+
+
+_formula: Callable[[_Fronted], Expression] = attrgetter("formula")
+_length: Callable[[_Fronted], int] = attrgetter("length")
 
 
 def _written_part(

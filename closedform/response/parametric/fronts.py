@@ -13,6 +13,14 @@ __all__ = ["MINUS", "UNIT", "fronts_of", "over"]
 UNIT, MINUS = Factored(Fraction(1), ()), Factored(Fraction(-1), ())
 
 
+LONG = 18
+"""Where a numerator has factors with more terms, few fronts are tried: nobody compares them."""
+
+
+def _terms_above(amount: Factored) -> int:
+    return sum(len(factor) for factor, exponent in amount.factors if exponent > 0)
+
+
 def over(value: Factored, divisor: Factored) -> Factored:
     """Return a quotient."""
     exponents = dict(value.factors)
@@ -30,12 +38,14 @@ def fronts_of(
 
     They are made of the factors shared above, those shared below, and the least common
     denominator, with the number or without; each takes the sign of the first amount, or its
-    opposite.  `few` leaves out the signs and what is rarely the best.  Without `partial` a
+    opposite.  `few` leaves out the signs and what is rarely the best; long amounts are never
+    given more.  Without `partial` a
     sum of several terms comes to the common denominator only if all amounts have it: a sum over
     eigenvalues is read term by term, each over its own differences.
     """
     if not amounts:
         return (UNIT,)
+    few = few or any(_terms_above(amount) > LONG for amount in amounts)
     factors = list(dict.fromkeys(f for amount in amounts for f, _ in amount.factors))
     above, below, common = [], [], []
     for factor in factors:

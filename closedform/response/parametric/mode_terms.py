@@ -113,7 +113,6 @@ def _terms(
     field: ParameterField, writing: ParameterField, mode: Mode, entry: Polynomial
 ) -> list[Term]:
     roots = mode.factor.roots
-    zero = writing.domain.zero
     r = [field.into(writing, entry.nth(k)) for k in range(mode.factor.degree)]
     centre = field.into(writing, roots.centre)
     names = [writing.symbol(name) for name in mode.names]
@@ -125,7 +124,7 @@ def _terms(
             even, odd = KERNELS[mode.regime.kind]
             return [
                 Term(r[1], 0, centre, even, w),
-                Term((r[0] + centre * r[1]) / w, 0, centre, odd, w),
+                Term(sum_at(writing, r, centre, [w]), 0, centre, odd, w),
             ]
         case "double":
             return [
@@ -139,7 +138,7 @@ def _terms(
         case "root and pair":
             root, sigma, omega = names
             g = root - sigma
-            amount = sum((c * root**k for k, c in enumerate(r)), zero) / (g**2 + omega**2)
+            amount = sum_at(writing, r, root, [g**2 + omega**2])
             return [
                 Term(amount, 0, root, None, None),
                 *_pair_terms(r, sigma, omega, _over_difference(g, omega)),
@@ -219,12 +218,12 @@ def _square_terms(
     mus = [w**2 if s == "hyperbolic" else -(w**2) for w, s in zip(names, signs, strict=True)]
     terms = []
     for k, (mu, w, sign) in enumerate(zip(mus, names, signs, strict=True)):
-        slope = reduce(mul, (mu - other for j, other in enumerate(mus) if j != k))
-        even = sum((c * mu**j for j, c in enumerate(moved[1::2])), writing.domain.zero) / slope
-        odd = _odd(writing, moved[0::2], mu, squares) / slope
+        slopes = [mu - other for j, other in enumerate(mus) if j != k]
+        even = sum_at(writing, moved[1::2], mu, slopes)
+        odd = sum_at(writing, [_odd(writing, moved[0::2], mu, squares)], mu, [*slopes, w])
         even_kernel, odd_kernel = KERNELS[sign]
         terms.append(Term(even, 0, centre, even_kernel, w))
-        terms.append(Term(odd / w, 0, centre, odd_kernel, w))
+        terms.append(Term(odd, 0, centre, odd_kernel, w))
     return terms
 
 
@@ -232,15 +231,10 @@ def _odd(
     writing: ParameterField, coefficients: Sequence[Scalar], mu: Scalar, squares: Sequence[Scalar]
 ) -> Scalar:
     """R_e(mu), or the same as mu times a polynomial, with q(mu) = 0; whichever is shorter."""
-    plain = sum((c * mu**j for j, c in enumerate(coefficients)), writing.domain.zero)
+    plain = sum_at(writing, coefficients, mu)
     if not coefficients[0] or not squares[-1]:
         return plain
     scale = coefficients[0] / squares[-1]
-    turned = sum(
-        (
-            c * mu**j - scale * q * mu**j
-            for j, (c, q) in enumerate(zip(coefficients, reversed(squares[1:]), strict=True))
-        ),
-        writing.domain.zero,
-    ) - scale * mu ** len(coefficients)
+    changed = [c - scale * q for c, q in zip(coefficients, reversed(squares[1:]), strict=True)]
+    turned = sum_at(writing, [*changed, -scale], mu)
     return min(plain, turned, key=lambda e: operations(rational_formula(writing, e)))
