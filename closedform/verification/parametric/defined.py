@@ -31,7 +31,7 @@ from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.values import read_back
 from closedform.verification.record import Check
 
-__all__ = ["defined_check"]
+__all__ = ["defined_check", "facts_of_names"]
 
 _ITEM = "formulas defined"
 
@@ -40,6 +40,9 @@ def defined_check(response: ParametricResponse, case: Case) -> Check:
     """No divisor in the formulas of a case, and in the definitions of its names, vanishes."""
     model = response.model
     names = tuple(q.name for q in case.quantities)
+    missing = [name for mode in case.modes for name in mode.names if name not in names]
+    if missing:
+        return Check(_ITEM, "refuted", f"{missing[0]} has no definition")
     field = ParameterField(parameters=(*model.field.parameters, *names))
     domain = _with_names(model.field, field, case)
     divisors: dict[Scalar, None] = {}
@@ -114,7 +117,7 @@ def _with_names(base: ParameterField, field: ParameterField, case: Case) -> Para
     ]
     conditions = [Comparison(base.into(field, c.element), c.relation) for c in known]
     for mode in case.modes:
-        conditions += _facts(field, mode)
+        conditions += facts_of_names(field, mode)
         for other in case.modes:
             if other is not mode and mode.regime.kind in _SIGNS:
                 conditions += _apart(base, field, mode, other)
@@ -153,8 +156,8 @@ def _with_equations_put_in(base: ParameterField, case: Case) -> Iterator[Compari
 _SIGNS = {"decaying": -1, "real roots": 1}
 
 
-def _facts(field: ParameterField, mode: Mode) -> Iterator[Comparison]:
-    """Signs of the names of one mode, and of their differences."""
+def facts_of_names(field: ParameterField, mode: Mode) -> Iterator[Comparison]:
+    """Yield what is said of the names of one mode: their signs, and their order."""
     names = [field.symbol(name) for name in mode.names]
     match mode.regime.kind:
         case "circular" | "hyperbolic" | "quartet":

@@ -47,23 +47,24 @@ class NamesAt:
                     formula = read_back(self.model, self.case, quantity.formula)
                     known[quantity.name] = enclose(formula, known)
                 elif quantity.root is not None:
-                    known[quantity.name] = _root(self.model.field, quantity.root, known)
+                    known[quantity.name] = _root(self.model.field, quantity.root, self.point)
         return known
 
 
-def _root(field: ParameterField, root: RootDefinition, known: Mapping[str, arb]) -> arb:
+def _root(field: ParameterField, root: RootDefinition, point: Point) -> arb:
     """The real root with the place that is stated, by real part and then imaginary part.
 
-    The precision grows until the roots are told apart; a root that is not real, or has no
-    certain place, has no value: a ball that is not finite.
+    The precision grows, for the parameters too, until the roots are told apart; a root that
+    is not real, or has no certain place, has no value: a ball that is not finite.
     """
-    bits = ctx.prec
-    while bits <= _MOST_BITS:
+    bits, most = ctx.prec, max(ctx.prec, _MOST_BITS)
+    while bits <= most:
         with ctx.workprec(bits):
+            known = point.balls()
             coefficients = [field.enclose_at(c, known) for c in reversed(root.polynomial)]
             roots = _isolated(acb_poly(coefficients))
             if roots is not None:
-                placed = _placed(roots, root.which, last=2 * bits > _MOST_BITS)
+                placed = _placed(roots, root.which, last=2 * bits > most)
                 if placed is not None:
                     return placed
         bits *= 2
