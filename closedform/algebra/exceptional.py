@@ -104,12 +104,13 @@ def discriminant_of(field: ParameterField, p: Polynomial) -> Scalar:
     if d > 3 and len(names) > MOST_IN_DISCRIMINANT:
         raise roots_unknown(field, p)
     below = reduce(_common_multiple, (c.denom for c in coefficients if c))
-    numbers = lcm(*(int(n.denominator) for c in coefficients for n in (c * below).numer.coeffs()))
     terms: dict[tuple[int, ...], Fraction] = {}
     for power, c in enumerate(reversed(coefficients)):
-        whole = (c * field.of_polynomial(below) * field.scalar(numbers)).numer
-        terms |= {(*m, power): rational(n) for m, n in whole.iterterms()}
-    found = discriminant_in_last(terms)
+        cleared = c * field.of_polynomial(below)  # a polynomial over a number
+        number = rational(cleared.denom.LC)
+        terms |= {(*m, power): rational(n) / number for m, n in cleared.numer.iterterms()}
+    numbers = lcm(*(n.denominator for n in terms.values()))
+    found = discriminant_in_last({m: n * numbers for m, n in terms.items()})
     ring = below.ring
     return field.of_polynomial(ring.from_dict({m: ring.domain(int(n)) for m, n in found.items()}))
 

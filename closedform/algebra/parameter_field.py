@@ -156,8 +156,8 @@ class ParameterField(BaseField):
             value = rational(coefficient)
             term = arb(fmpq(value.numerator, value.denominator))
             for name, exponent in zip(self.parameters, monomial, strict=True):
-                if exponent:
-                    term *= values[name] ** exponent
+                for _ in range(exponent):  # a power of a ball around 0 is not finite in FLINT
+                    term *= values[name]
             total += term
         return total
 

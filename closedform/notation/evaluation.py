@@ -53,10 +53,25 @@ def enclose(expression: Expression, values: Mapping[str, arb]) -> arb:
             return product
         case Quotient(above, below):
             return enclose(above, values) / enclose(below, values)
+        case Power(base, Number(whole)) if whole.denominator == 1:
+            return _integer_power(enclose(base, values), int(whole))
         case Power(base, exponent):
             return enclose(base, values) ** enclose(exponent, values)
         case Call(function, argument):
             return _apply(function, enclose(argument, values))
+
+
+def _integer_power(base: arb, exponent: int) -> arb:
+    """Return base^exponent for an exponent >= 0 by squaring.
+
+    FLINT's power of a ball with the midpoint 0 is not finite, which its products are.
+    """
+    result = arb(1)
+    for bit in bin(exponent)[2:]:
+        result = result * result
+        if bit == "1":
+            result = result * base
+    return result
 
 
 def _apply(function: str, argument: arb) -> arb:

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+from fractions import Fraction
+
 import pytest
 from flint import arb, ctx
 from hypothesis import given
 
 from closedform.notation.evaluation import enclose
-from closedform.notation.expression import Call, Expression, Name
+from closedform.notation.expression import Call, Expression, Name, Number, Power
 from tests.notation.formulas import rational_formulas, rational_value, read
 
 CONSTANTS = [  # NIST Digital Library of Mathematical Functions, chapter 4; 30 digits
@@ -66,3 +68,9 @@ def test_a_name_without_a_value_is_an_error_of_the_caller() -> None:
 def test_an_unknown_function_is_an_error_of_the_caller() -> None:
     with pytest.raises(ValueError, match="no function tan"):
         enclose(Call("tan", read("1")), {})
+
+
+def test_the_power_of_a_ball_around_zero_is_finite() -> None:
+    squared = enclose(Power(Name("x"), Number(Fraction(2))), {"x": arb("0 +/- 1e-10")})
+    assert squared.is_finite()
+    assert squared.contains(0)

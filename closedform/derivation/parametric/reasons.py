@@ -70,11 +70,7 @@ def reason_of(field: ParameterField, argument: SignArgument, *, deep: bool = Fal
         case BySquares(squares, rest):
             return _by_squares(field, argument, squares, rest, deep=deep)
         case ByFactors(_, factors):
-            sentence: Sentence = [said, ", by its factors:"]
-            for k, (factor, _) in enumerate(factors):
-                sentence += [", "] if k else []
-                sentence += _part(field, factor, deep=deep)
-            return sentence
+            return [said, ", by its factors:", *_by_factors(field, factors, deep=deep)]
         case ByExpansion(comparison, _, coefficients):
             return _by_expansion(field, argument, comparison, coefficients, deep=deep)
         case Combined(arguments):
@@ -82,13 +78,27 @@ def reason_of(field: ParameterField, argument: SignArgument, *, deep: bool = Fal
             best = [a for a in telling if a.sign == argument.sign] or telling
             if best[0].sign == argument.sign:
                 return reason_of(field, best[0], deep=deep)
-            sentence = []
+            sentence: Sentence = []
             for k, part in enumerate(telling):
                 sentence += ["; and"] if k else []
                 sentence += reason_of(field, part, deep=deep)
             return sentence
         case Undecided():
             raise ValueError(f"no argument says which sign {element} has")
+
+
+def _by_factors(
+    field: ParameterField, factors: Sequence[tuple[SignArgument, int]], *, deep: bool
+) -> Sentence:
+    sentence: Sentence = []
+    for k, (factor, exponent) in enumerate(factors):
+        sentence += [", "] if k else []
+        if factor.sign == "unknown":  # of an even power only
+            square = factor.element**exponent
+            sentence += [sign_statement(field, square, "nonnegative")]
+        else:
+            sentence += _part(field, factor, deep=deep)
+    return sentence
 
 
 def _part(field: ParameterField, argument: SignArgument, *, deep: bool) -> Sentence:

@@ -88,7 +88,8 @@ def transform_step(response: ParametricResponse, cases: Sequence[Case], letters:
                 (Symbol("transition", argument=t), _residue_sum(response, t)),
             )
         )
-        statements += _slopes(response, case)
+        if len({tuple(m.names for m in c.modes) for c in cases}) == 1:
+            statements += _slopes(response, case)
     else:
         facts["route"] = "entries"
     return Step("transform", tuple(statements), facts, ("characteristic_polynomial",))

@@ -23,11 +23,14 @@ __all__ = ["Point", "border_points", "case_points"]
 class Point:
     """A value for every parameter: numbers, and at most one root of a polynomial over Q.
 
-    `root` is (name, coefficients highest first, place among the real roots from 0).
+    `root` is (name, coefficients highest first, place among the real roots from 0); `derived`
+    are parameters that equations give by the others, as elements of `field`.
     """
 
     values: tuple[tuple[str, Fraction], ...]
     root: tuple[str, tuple[Fraction, ...], int] | None = None
+    derived: tuple[tuple[str, Scalar], ...] = ()
+    field: ParameterField | None = None
 
     def balls(self) -> dict[str, arb]:
         """Return a ball for every parameter at FLINT's current precision."""
@@ -35,12 +38,16 @@ class Point:
         if self.root is not None:
             name, coefficients, place = self.root
             found[name] = _real_roots(coefficients)[place]
+        for name, element in self.derived:
+            if self.field is not None:
+                found[name] = self.field.enclose_at(element, found)
         return found
 
     def __str__(self) -> str:
         texts = [f"{name} = {value}" for name, value in self.values]
         if self.root is not None:
             texts.append(f"{self.root[0]} a root of its equation")
+        texts += [f"{name} from the others" for name, _ in self.derived]
         return ", ".join(texts)
 
 
@@ -101,13 +108,14 @@ def _solved(
     for monomial, c in left.numer.iterterms():
         coefficients[monomial[place]] = rational(c) / rational(left.denom.LC)
     degree = max(coefficients, default=0)
-    if degree < 1 or case.branch.values:
+    if degree < 1:
         return []
     highest_first = tuple(coefficients.get(k, Fraction(0)) for k in range(degree, -1, -1))
     found = []
     for k in range(len(_real_roots(highest_first))):
-        rest = tuple((n, v) for n, v in values.items() if n != name)
-        point = Point(rest, (name, highest_first, k))
+        given = case.branch.values
+        rest = tuple((n, v) for n, v in values.items() if n != name and n not in given)
+        point = Point(rest, (name, highest_first, k), tuple(given.items()), field)
         if _admissible(field, case.domain.conditions, point):
             found.append(point)
     return found

@@ -190,7 +190,7 @@ def _shortest_under_equations(
                     {name: field.into(writing, solved)}
                     for name in field.parameters
                     if (solved := linear_solution(field, condition.element, name)) is not None
-                    and domain.sign_of(field.of_polynomial(solved.denom)).never_zero
+                    and domain.sign_of(_slope(field, condition.element, name)).never_zero
                 ]
     forms = []
     for put in puts:
@@ -199,6 +199,11 @@ def _shortest_under_equations(
         forms.append((length, put, results))
     _, put, results = min(forms, key=lambda form: form[0])
     return results, rewritten(writing, _put_in(writing, terms.entries, put), used)
+
+
+def _slope(field: ParameterField, element: Scalar, name: str) -> Scalar:
+    """What a parameter is multiplied by where the element is zero."""
+    return field.derivative(field.of_polynomial(element.numer), name)
 
 
 def _put_in(writing: ParameterField, functions: Rows, put: dict[str, Scalar]) -> Rows:
