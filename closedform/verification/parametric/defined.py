@@ -23,6 +23,7 @@ from closedform.notation.expression import (
     Product,
     Quotient,
     Sum,
+    names_in,
 )
 from closedform.notation.rational import rational_value
 from closedform.response.parametric.case import Case
@@ -31,7 +32,7 @@ from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.values import read_back
 from closedform.verification.record import Check
 
-__all__ = ["defined_check", "facts_of_names"]
+__all__ = ["defined_check", "facts_of_names", "undefined_name"]
 
 _ITEM = "formulas defined"
 
@@ -40,9 +41,9 @@ def defined_check(response: ParametricResponse, case: Case) -> Check:
     """No divisor in the formulas of a case, and in the definitions of its names, vanishes."""
     model = response.model
     names = tuple(q.name for q in case.quantities)
-    missing = [name for mode in case.modes for name in mode.names if name not in names]
-    if missing:
-        return Check(_ITEM, "refuted", f"{missing[0]} has no definition")
+    missing = undefined_name(response, case)
+    if missing is not None:
+        return Check(_ITEM, "refuted", f"{missing} has no definition")
     field = ParameterField(parameters=(*model.field.parameters, *names))
     domain = _with_names(model.field, field, case)
     divisors: dict[Scalar, None] = {}
@@ -61,6 +62,20 @@ def defined_check(response: ParametricResponse, case: Case) -> Check:
         f"every divisor in the formulas was taken apart, {len(divisors)} factors in all: none of "
         "them vanishes in this case",
     )
+
+
+def undefined_name(response: ParametricResponse, case: Case) -> str | None:
+    """Return a name that is used in a case without a definition before, if there is one."""
+    known = set(response.model.field.parameters)
+    for quantity in case.quantities:
+        used = frozenset() if quantity.formula is None else names_in(quantity.formula)
+        if unknown := used - known:
+            return min(unknown)
+        known.add(quantity.name)
+    known.add(response.model.time)
+    used = frozenset(name for mode in case.modes for name in mode.names)
+    unknown = used.union(*map(names_in, _formulas(case))) - known
+    return min(unknown, default=None)
 
 
 def _formulas(case: Case) -> Iterator[Expression]:

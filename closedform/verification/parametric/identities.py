@@ -59,6 +59,8 @@ def branch_checks(response: ParametricResponse, branch: Branch) -> tuple[Check, 
             "e^(A0) = I", branch.exponential, field.identity(a.shape[0]), vanishes=vanishes
         ),
     )
+    if shared[0].outcome == "refuted":  # another matrix has other chains
+        return shared
     if branch.relation is not None:
         return (*shared, _factors_check(response, branch))
     jordan = jordan_form(field, a, branch.spectrum)

@@ -19,6 +19,7 @@ from closedform.response.parametric.case import Case
 from closedform.response.parametric.points import Point, case_points
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.cover import applying_cases
+from closedform.verification.parametric.defined import undefined_name
 from closedform.verification.parametric.values import (
     NamesAt,
     enclosed_matrix,
@@ -58,6 +59,8 @@ def join_check(response: ParametricResponse, case: Case) -> Iterator[Check]:
         if len(found) != 1 or found[0].number == case.number:
             return  # not covered, or no border in this direction
         neighbour = found[0]
+        if any(undefined_name(response, c) is not None for c in (case, neighbour)):
+            return  # what their own checks say
         distance = _distance(response, case, point, neighbour, near)
         if not distance.is_finite() or (
             previous is not None

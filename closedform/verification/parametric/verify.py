@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.parametric.conditions import condition_check
 from closedform.verification.parametric.cover import cover_check, cover_points_check
 from closedform.verification.parametric.defined import defined_check
 from closedform.verification.parametric.identities import branch_checks, state_checks
@@ -25,6 +26,7 @@ def verify_cases(response: ParametricResponse) -> CaseRecords:
         VerificationRecord(
             (
                 *of_branches[case.branch.number],
+                condition_check(response, case),
                 *state_checks(response, case),
                 defined_check(response, case),
                 formula_check(response, case),

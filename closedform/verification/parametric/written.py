@@ -23,7 +23,7 @@ from closedform.verification.comparison import (
     check_of,
     compared,
 )
-from closedform.verification.parametric.defined import facts_of_names
+from closedform.verification.parametric.defined import facts_of_names, undefined_name
 from closedform.verification.parametric.values import (
     NamesAt,
     enclosed_matrix,
@@ -45,6 +45,9 @@ def formula_check(response: ParametricResponse, case: Case) -> Check:
     The numbers it is held against are the exponential of the model's own matrix there.
     """
     model = response.model
+    missing = undefined_name(response, case)
+    if missing is not None:
+        return Check(_ITEM, "refuted", f"{missing} has no definition")
     points = case_points(model.field, case, POINTS)
     if not points:
         return Check(_ITEM, "not attempted", "no point of this case was found to put in")
@@ -71,10 +74,8 @@ def formula_check(response: ParametricResponse, case: Case) -> Check:
 
 def _names_finding(response: ParametricResponse, case: Case, point: Point) -> Finding:
     """The names have the signs and the order that are said of them."""
-    names = {q.name for q in case.quantities}
-    if missing := [name for mode in case.modes for name in mode.names if name not in names]:
-        return Finding("refuted", f"{missing[0]} has no definition")
-    field = ParameterField(parameters=(*response.model.field.parameters, *sorted(names)))
+    names = (q.name for q in case.quantities)
+    field = ParameterField(parameters=(*response.model.field.parameters, *names))
     facts = [fact for mode in case.modes for fact in facts_of_names(field, mode)]
     names_at = NamesAt(response.model, case, point)
     bits = START_BITS
