@@ -60,7 +60,8 @@ class Exceptional:
 
     `fate` is "excluded" by the domain, with `argument` the sign that says so or
     `contradicted` the conditions that cannot hold then; a "branch" with this number; or
-    "not covered", with `reason`.
+    "not covered", with `reason`.  With `shared` the branch's formulas would hold there too, and
+    the points are left to the other branch: so each belongs to one.
     """
 
     polynomials: tuple[Scalar, ...]
@@ -69,6 +70,7 @@ class Exceptional:
     contradicted: tuple[Comparison, ...] = ()
     branch: int | None = None
     reason: str = ""
+    shared: bool = False
 
 
 @dataclass(frozen=True)
@@ -122,6 +124,7 @@ def case_tree(
     Exact:   no number is rounded; every exclusion has an argument.
     """
     starts = [_under_conditions(field, domain)]
+    parents: dict[int, int] = {}
     known: dict[object, int] = {_key(starts[0]): 0}
     branches: list[Branch] = []
     for number, start in enumerate(starts):  # it grows while it is walked through
@@ -140,6 +143,7 @@ def case_tree(
             key = _key(fate)
             if key not in known and len(starts) < room:
                 known[key] = len(starts)
+                parents[len(starts)] = number
                 starts.append(fate)
             found.append(
                 Exceptional(polynomials, "branch", branch=known[key])
@@ -147,7 +151,32 @@ def case_tree(
                 else Exceptional(polynomials, "not covered", reason="budget")
             )
         branches.append(replace(solved, exceptional=tuple(found)))
-    return tuple(branches)
+    return tuple(
+        replace(b, exceptional=(*b.exceptional, *_left_to_others(field, branches, parents, b)))
+        for b in branches
+    )
+
+
+def _left_to_others(
+    field: ParameterField, branches: list[Branch], parents: dict[int, int], branch: Branch
+) -> Iterator[Exceptional]:
+    """Yield what a branch shares with branches of lower number that part from its way.
+
+    Where two ways out of a branch meet, the points go to the first of them.
+    """
+    own = {e.polynomials for e in branch.exceptional}
+    step = branch.number
+    while step in parents:
+        for exceptional in branches[parents[step]].exceptional:
+            other = exceptional.branch
+            if other is None or other >= step:
+                continue
+            left = tuple(field.substituted(p, branch.values) for p in exceptional.polynomials)
+            apart = any(p and branch.domain.sign_of(p).never_zero for p in left)
+            if not apart and left not in own:
+                own.add(left)
+                yield Exceptional(left, "branch", branch=other, shared=True)
+        step = parents[step]
 
 
 def _under_conditions(field: ParameterField, domain: ParameterDomain) -> _Start:

@@ -15,7 +15,7 @@ __all__ = ["holds_at", "sample_points", "value_at"]
 
 TRIES = 200
 """Tries for each point asked for, and at least ten times as many in all."""
-SCALES = ((6, 1), (9, 2), (20, 4), (40, 10), (100, 1), (6, 20))
+SCALES = ((6, 1), (9, 2), (20, 4), (40, 10), (100, 1), (6, 20), (9, 200), (3000, 1))
 """The largest numerator and denominator of each scale."""
 
 Terms = tuple[tuple[Fraction, tuple[tuple[str, int], ...]], ...]

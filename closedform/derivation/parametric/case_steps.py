@@ -61,6 +61,8 @@ def _case_row(response: ParametricResponse, case: Case) -> dict[str, object]:
 
 def _found(response: ParametricResponse, branch: Branch) -> Iterator[dict[str, object]]:
     here = _numbers(response, branch.number)
+    if not here:  # all of it belongs to others, or it is empty
+        return
     seen: set[tuple[object, ...]] = set()
     for exceptional in branch.exceptional:
         if exceptional.polynomials not in seen:
@@ -99,7 +101,7 @@ def _exceptional_row(
         row["there"] = there
         row["vanishing"] = {
             "equations": [_equation(branch, p) for p in exceptional.polynomials],
-            "cases": there,
+            "cases": () if exceptional.shared else there,
         }
     elif exceptional.argument is not None:
         argument = exceptional.argument

@@ -49,13 +49,9 @@ def cover_check(response: ParametricResponse) -> Check:
             if exceptional.fate == "not covered":
                 open_ones += 1
             elif exceptional.fate == "branch":
-                target = response.branches[exceptional.branch or 0]
-                values = target.values
-                for polynomial in exceptional.polynomials:
-                    left = response.model.field.substituted(polynomial, values)
-                    if not vanishes_on(target, left):
-                        how = f"{polynomial} does not vanish on branch {target.number}"
-                        return Check(item, "refuted", how)
+                fault = _target_fault(response, branch, exceptional)
+                if fault is not None:
+                    return Check(item, "refuted", fault)
             elif not _is_excluded(response.model.field, branch, exceptional):
                 return Check(item, "refuted", f"no reason excludes {exceptional.polynomials[0]}")
         fault = cell_fault(response, branch)
@@ -69,6 +65,30 @@ def cover_check(response: ParametricResponse) -> Check:
     if open_ones:
         split += f", but for {open_ones} listed as not covered"
     return Check(item, "proved", split)
+
+
+def _target_fault(
+    response: ParametricResponse, branch: Branch, exceptional: Exceptional
+) -> str | None:
+    """Return why a branch does not take over where the polynomials vanish, or None.
+
+    They vanish on that branch.  Points that two branches share are left to one of them by a
+    branch that both of them lead out of, and that has the polynomials in its list.
+    """
+    field = response.model.field
+    target = response.branches[exceptional.branch or 0]
+    if not exceptional.shared:
+        for polynomial in exceptional.polynomials:
+            if not vanishes_on(target, field.substituted(polynomial, target.values)):
+                return f"{polynomial} does not vanish on branch {target.number}"
+        return None
+    for other in response.branches[: branch.number]:
+        for item in other.exceptional:
+            left = tuple(field.substituted(p, branch.values) for p in item.polynomials)
+            known = not item.shared and item.fate == "branch" and item.branch == target.number
+            if known and left == exceptional.polynomials:
+                return None
+    return f"nothing leaves what branch {branch.number} shares to branch {target.number}"
 
 
 def _is_excluded(field: ParameterField, branch: Branch, exceptional: Exceptional) -> bool:
