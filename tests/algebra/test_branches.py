@@ -1,0 +1,183 @@
+"""The tree of branches: every point of the domain belongs to a branch that solves it."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+from functools import cache
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from closedform.algebra.branches import (
+    Branch,
+    Equation,
+    case_tree,
+    linear_solution,
+    put_in,
+    uncovered,
+)
+from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parametric_spectrum import vanishes_under
+from closedform.algebra.sample import holds_at, value_at
+from tests.rational_elements import element
+from tests.sign_checks import field_of, positive
+
+CHAIN = [["-a", "0", "0"], ["a", "-b", "0"], ["0", "b", "-c"]]
+
+
+def tree(domain: ParameterDomain, rows: list[list[str]], **limits: int) -> tuple[Branch, ...]:
+    field = domain.field
+    matrix = field.matrix([[element(field, e) for e in row] for row in rows])
+    return case_tree(field, matrix, domain, **limits)
+
+
+@cache
+def chain() -> tuple[Branch, ...]:
+    return tree(positive("a b c"), CHAIN)
+
+
+def applying(field: ParameterField, branches: tuple[Branch, ...], point: object) -> list[int]:
+    """The branches whose equations hold at a point and whose exceptions do not."""
+    found = []
+    for branch in branches:
+        equations = all(value_at(e.polynomial, point) == 0 for e in branch.equations)
+        exceptions = any(
+            all(value_at(field.substituted(p, branch.values), point) == 0 for p in e.polynomials)
+            for e in branch.exceptional
+        )
+        if equations and not exceptions:
+            found.append(branch.number)
+    return found
+
+
+@given(st.tuples(*[st.integers(1, 3)] * 3))
+def test_every_point_of_a_chain_belongs_to_one_branch(values: tuple[int, int, int]) -> None:
+    point = dict(zip("abc", map(Fraction, values), strict=True))
+    assert len(applying(positive("a b c").field, chain(), point)) == 1
+
+
+def test_the_generic_branch_comes_first_and_has_no_equations() -> None:
+    generic = chain()[0]
+    assert (generic.number, generic.equations) == (0, ())
+    assert [b.number for b in chain()] == list(range(5))
+
+
+def test_rates_that_meet_lead_to_branches_and_these_to_one_where_all_are_equal() -> None:
+    field = positive("a b c").field
+    equations = [
+        sorted((e.parameter, str(e.value)) for e in branch.equations) for branch in chain()
+    ]
+    assert equations[0] == []
+    assert sorted(equations[1:4]) == [[("b", "a")], [("c", "a")], [("c", "b")]]
+    assert equations[4] == [("b", "a"), ("c", "a")]
+    assert not chain()[4].exceptional
+    assert all(not field.names_in(v) & {"b", "c"} for v in chain()[4].values.values())
+
+
+def test_a_branch_solves_the_matrix_with_its_equations_put_in() -> None:
+    field = positive("a b c").field
+    matrix = field.matrix([[element(field, e) for e in row] for row in CHAIN])
+    for branch in chain():
+        assert branch.matrix == put_in(field, matrix, branch.values)
+        assert branch.relation is None
+
+
+def test_each_polynomial_vanishes_on_the_branch_that_it_leads_to() -> None:
+    field = positive("a b c").field
+    for branch in chain():
+        for item in branch.exceptional:
+            assert item.fate == "branch"
+            target = chain()[item.branch or 0]
+            assert not any(field.substituted(p, target.values) for p in item.polynomials)
+
+
+def test_what_the_domain_excludes_has_an_argument() -> None:
+    domain = positive("a b")
+    apart = domain.narrowed(Comparison(element(domain.field, "a - b"), ">"))
+    (branch,) = tree(apart, [["-a", "0"], ["a", "-b"]])
+    (item,) = branch.exceptional
+    assert item.fate == "excluded"
+    assert item.argument is not None
+    assert item.argument.never_zero
+    assert item.argument.element == element(domain.field, "a - b")
+
+
+def test_an_equation_of_the_domain_is_put_in_first() -> None:
+    domain = positive("a b")
+    equal = domain.narrowed(Comparison(element(domain.field, "a - b"), "="))
+    (branch,) = tree(equal, [["-a", "0"], ["a", "-b"]])
+    assert [(e.parameter, str(e.value)) for e in branch.equations] == [("b", "a")]
+    (factor,) = branch.spectrum.factors
+    assert factor.blocks == (2,)
+
+
+def test_branches_beyond_the_limit_are_listed_as_not_covered() -> None:
+    branches = tree(positive("a b c"), CHAIN, most=2)
+    assert len(branches) == 2
+    left = list(uncovered(branches))
+    assert left
+    assert all(item.fate == "not covered" and item.reason == "budget" for _, item in left)
+    assert list(uncovered(chain())) == []
+
+
+def test_an_equation_that_no_parameter_solves_is_kept() -> None:
+    domain = ParameterDomain(field_of("a b"), ())
+    field = domain.field
+    branches = tree(domain, [["0", "1", "0"], ["0", "0", "1"], ["-b", "-a", "0"]])
+    kept = [b for b in branches if b.relation is not None]
+    assert len(kept) == 1
+    (branch,) = kept
+    relation = branch.relation
+    assert relation == element(field, "4*a^3 + 27*b^2")
+    assert branch.equations == (Equation(relation),)
+    assert branch.values == {}
+    given_polynomial = field.polynomial(branch.matrix.charpoly())
+    difference = given_polynomial - branch.spectrum.characteristic_polynomial
+    assert all(vanishes_under(c, relation) for c in difference.to_list())
+
+
+@pytest.mark.parametrize(
+    ("text", "name", "value"),
+    [
+        ("a - b", "a", "b"),
+        ("a*b + c", "b", "-c/a"),
+        ("(a - b)/c", "b", "a"),
+        ("a^2 - b", "a", None),
+        ("a - b", "c", None),
+        ("a*b - a", "a", "0"),
+    ],
+)
+def test_an_equation_is_solved_for_a_parameter_in_which_it_is_linear(
+    text: str, name: str, value: str | None
+) -> None:
+    field = field_of("a b c")
+    expected = None if value is None else element(field, value)
+    found = linear_solution(field, element(field, text), name)
+    assert found == expected
+    if found is not None:
+        assert not field.substituted(element(field, text), {name: found})
+
+
+def test_nothing_is_put_in_where_there_are_no_values() -> None:
+    field = field_of("a")
+    matrix = field.matrix([[field.symbol("a")]])
+    assert put_in(field, matrix, {}) is matrix
+    assert put_in(field, matrix, {"a": field.scalar(3)}) == field.matrix([[field.scalar(3)]])
+
+
+@given(st.tuples(*[st.integers(1, 4)] * 4))
+def test_points_of_a_depot_belong_to_one_branch_and_its_domain(
+    values: tuple[int, int, int, int],
+) -> None:
+    domain = positive("ka k10 k12 k21")
+    point = dict(zip(domain.field.parameters, map(Fraction, values), strict=True))
+    (number,) = applying(domain.field, depot(), point)
+    assert all(holds_at(c, point) for c in depot()[number].domain.conditions)
+
+
+@cache
+def depot() -> tuple[Branch, ...]:
+    rows = [["-ka", "0", "0"], ["ka", "-(k10 + k12)", "k21"], ["0", "k12", "-k21"]]
+    return tree(positive("ka k10 k12 k21"), rows)
