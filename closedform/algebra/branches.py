@@ -17,6 +17,7 @@ from dataclasses import dataclass, replace
 from typing import Literal
 
 from closedform.algebra.domain import Comparison, ParameterDomain, SignArgument
+from closedform.algebra.equations import Equation, Start, imposed
 from closedform.algebra.exceptional import exceptional_elements
 from closedform.algebra.exponential import ExponentialMatrix, exponential_by_resolvent
 from closedform.algebra.factor_structure import FactorStructure, structure_of_factor
@@ -30,10 +31,8 @@ __all__ = [
     "MOST_AT_ONCE",
     "MOST_BRANCHES",
     "Branch",
-    "Equation",
     "Exceptional",
     "case_tree",
-    "linear_solution",
     "put_in",
     "uncovered",
 ]
@@ -43,15 +42,6 @@ MOST_BRANCHES = 16
 MOST_AT_ONCE = 8
 """Equations that lead out of the generic branch.  Where there are more, the branches of which
 each is a part are too many, and none of them is solved."""
-
-
-@dataclass(frozen=True)
-class Equation:
-    """`polynomial` = 0, solved for `parameter` = `value`; kept as it is where these are None."""
-
-    polynomial: Scalar
-    parameter: str | None = None
-    value: Scalar | None = None
 
 
 @dataclass(frozen=True)
@@ -102,14 +92,6 @@ class Branch:
         return {e.parameter: e.value for e in self.equations if e.parameter is not None}
 
 
-@dataclass(frozen=True)
-class _Start:
-    """A branch that is not solved yet."""
-
-    equations: tuple[Equation, ...]
-    domain: ParameterDomain
-
-
 def case_tree(
     field: ParameterField,
     matrix: FieldMatrix,
@@ -131,9 +113,11 @@ def case_tree(
         solved = _solved(field, matrix, start, number)
         fates = [
             (polynomials, _fate(field, solved, polynomials))
-            for polynomials in exceptional_elements(field, solved.exponential, solved.structures)
+            for polynomials in exceptional_elements(
+                field, solved.exponential, solved.structures, start.domain
+            )
         ]
-        ahead = {_key(fate) for _, fate in fates if isinstance(fate, _Start)}
+        ahead = {_key(fate) for _, fate in fates if isinstance(fate, Start)}
         room = most if len(ahead) <= MOST_AT_ONCE else 1
         found = []
         for polynomials, fate in fates:
@@ -179,13 +163,13 @@ def _left_to_others(
         step = parents[step]
 
 
-def _under_conditions(field: ParameterField, domain: ParameterDomain) -> _Start:
+def _under_conditions(field: ParameterField, domain: ParameterDomain) -> Start:
     """The start of the generic branch: the equations of the domain are put in."""
-    start = _Start((), domain)
+    start = Start((), domain)
     for condition in domain.conditions:
         if condition.relation == "=":
-            step = _imposed(field, start, condition.element)
-            start = step if isinstance(step, _Start) else start
+            step = imposed(field, start, condition.element)
+            start = step if isinstance(step, Start) else start
     return start
 
 
@@ -197,7 +181,7 @@ def put_in(field: ParameterField, matrix: FieldMatrix, values: dict[str, Scalar]
     return field.matrix([[field.substituted(e, values) for e in row] for row in rows])
 
 
-def _solved(field: ParameterField, matrix: FieldMatrix, start: _Start, number: int) -> Branch:
+def _solved(field: ParameterField, matrix: FieldMatrix, start: Start, number: int) -> Branch:
     values = {e.parameter: e.value for e in start.equations if e.parameter is not None}
     a = put_in(field, matrix, values)
     relation = next((e.polynomial for e in start.equations if e.parameter is None), None)
@@ -216,15 +200,15 @@ def _solved(field: ParameterField, matrix: FieldMatrix, start: _Start, number: i
 
 def _fate(
     field: ParameterField, branch: Branch, polynomials: tuple[Scalar, ...]
-) -> Exceptional | _Start:
+) -> Exceptional | Start:
     """Say what becomes of the points of a branch at which the polynomials vanish together."""
     for polynomial in polynomials:
         argument = branch.domain.sign_of(polynomial)
         if argument.never_zero:
             return Exceptional(polynomials, "excluded", argument)
-    start = _Start(branch.equations, branch.domain)
+    start = Start(branch.equations, branch.domain)
     for polynomial in polynomials:
-        step = _imposed(field, start, polynomial)
+        step = imposed(field, start, polynomial)
         if isinstance(step, SignArgument):
             return Exceptional(polynomials, "excluded", step)
         if isinstance(step, str):
@@ -236,70 +220,7 @@ def _fate(
     return start
 
 
-def _imposed(
-    field: ParameterField, start: _Start, polynomial: Scalar
-) -> _Start | SignArgument | str:
-    """Return a start with one equation more; why the domain excludes it; or why it is not solved.
-
-    An equation is solved for a parameter, or kept as it is: one of these at the most.
-    """
-    domain = start.domain
-    values = {e.parameter: e.value for e in start.equations if e.parameter is not None}
-    left = field.substituted(polynomial, values)
-    if not left:
-        return start
-    factors = [field.of_polynomial(f) for f, e in field.factored(left).factors if e > 0]
-    open_ones = [f for f in factors if not domain.sign_of(f).never_zero]
-    if not open_ones:
-        return domain.sign_of(left)
-    if len(open_ones) > 1:
-        return "several equations"
-    equation = _equation(field, open_ones[0], domain)
-    if equation.parameter is None or equation.value is None:
-        if any(e.parameter is None for e in start.equations):
-            return "two relations"
-        narrowed = domain.narrowed(Comparison(equation.polynomial, "="))
-        return _Start((*start.equations, equation), narrowed)
-    put = {equation.parameter: equation.value}
-    solved = (_put_in_equation(field, e, put) for e in start.equations if e.parameter is not None)
-    made = _Start((*solved, equation), domain.substituted(equation.parameter, equation.value))
-    kept = next((e.polynomial for e in start.equations if e.parameter is None), None)
-    # an equation that was kept is another one now, and may be solved
-    return made if kept is None else _imposed(field, made, kept)
-
-
-def _put_in_equation(field: ParameterField, equation: Equation, put: dict[str, Scalar]) -> Equation:
-    value = None if equation.value is None else field.substituted(equation.value, put)
-    return replace(equation, value=value)
-
-
-def _equation(field: ParameterField, polynomial: Scalar, domain: ParameterDomain) -> Equation:
-    """Solve polynomial = 0 for a parameter in which it is linear, the last one if possible.
-
-    The coefficient of the parameter must not vanish on the domain; a number is preferred.
-    """
-    choices = []
-    for name in reversed(field.parameters):
-        solution = linear_solution(field, polynomial, name)
-        if solution is None:
-            continue
-        slope = field.derivative(polynomial, name)
-        plain = field.constant(slope) is not None
-        if plain or domain.sign_of(slope).never_zero:
-            choices.append((not plain, Equation(polynomial, name, solution)))
-    return min(choices, key=lambda c: c[0])[1] if choices else Equation(polynomial)
-
-
-def linear_solution(field: ParameterField, element: Scalar, name: str) -> Scalar | None:
-    """Return the value of a parameter at which an element vanishes, if it is linear in it."""
-    polynomial = field.of_polynomial(element.numer)
-    slope = field.derivative(polynomial, name)
-    if not slope or name in field.names_in(slope):
-        return None
-    return -field.substituted(polynomial, {name: field.domain.zero}) / slope
-
-
-def _key(start: _Start) -> object:
+def _key(start: Start) -> object:
     """The branch's equations: solved ones by parameter, kept ones as they are."""
     return frozenset(
         (e.parameter, e.value if e.parameter is not None else e.polynomial) for e in start.equations

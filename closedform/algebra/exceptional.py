@@ -7,6 +7,7 @@ from fractions import Fraction
 from functools import reduce
 from math import lcm
 
+from closedform.algebra.domain import ParameterDomain
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.factor_structure import FactorStructure
 from closedform.algebra.field import Polynomial, Scalar, rational
@@ -48,6 +49,7 @@ def exceptional_elements(
     field: ParameterField,
     exponential: ExponentialMatrix,
     structures: Sequence[FactorStructure | None],
+    domain: ParameterDomain,
 ) -> Iterator[tuple[Scalar, ...]]:
     """Yield groups of polynomials: where all of a group vanish an exponential does not hold.
 
@@ -63,9 +65,29 @@ def exceptional_elements(
             if made not in seen:
                 seen.add(made)
                 yield (made,)
+    yield from _meeting_pairs(field, exponential, domain)
     for structure in structures:
         if structure is not None and structure.simple is not None:
             yield from structure.simple.exceptions
+
+
+def _meeting_pairs(
+    field: ParameterField, exponential: ExponentialMatrix, domain: ParameterDomain
+) -> Iterator[tuple[Scalar, ...]]:
+    """The discriminant of a quadratic factor that has one sign and may be zero.
+
+    The formulas would hold there too; but a sum of terms of one sign vanishes only where all of
+    them do, w^2 + u^2 = 0 say, and that is a simpler branch of its own.
+    """
+    for term in exponential.terms:
+        if term.factor.degree != 2:
+            continue
+        discriminant = term.factor.roots.discriminant
+        if domain.sign_of(discriminant).sign in ("nonnegative", "nonpositive"):
+            for polynomial, _ in field.factored(discriminant).factors:
+                made = field.of_polynomial(polynomial)
+                if len(polynomial) > 1 and not domain.sign_of(made).never_zero:
+                    yield (made,)
 
 
 def _denominators(

@@ -5,7 +5,8 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
-from closedform.algebra.branches import Branch, linear_solution
+from closedform.algebra.branches import Branch
+from closedform.algebra.equations import linear_solution
 from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import Scalar

@@ -6,7 +6,7 @@ from collections.abc import Iterator
 from functools import reduce
 from operator import mul
 
-from closedform.algebra.branches import linear_solution
+from closedform.algebra.equations import linear_solution
 from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
