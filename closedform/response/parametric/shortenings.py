@@ -87,17 +87,19 @@ def rewritings_by_root(
 
 
 def sound_rewritings(
-    domain: ParameterDomain, rewritings: Iterable[Rewriting]
+    domain: ParameterDomain, rewritings: Iterable[Rewriting], below: frozenset[str]
 ) -> tuple[Rewriting, ...]:
     """Return the rewritings that divide by nothing that may vanish, and not by the name itself.
 
-    m = c/(2 delta) is no way to write a mass: without damping both are zero.  `domain` is over
-    the writing field, with the names in it.
+    m = c/(2 delta) is no way to write a mass: without damping both are zero.  Parameters that
+    stand `below` are replaced by single terms only: T2 - tau would not be seen to be other
+    than zero.  `domain` is over the writing field, with the names in it.
     """
     found = []
     for rewriting in rewritings:
-        below = domain.field.of_polynomial(rewriting.replacement.denom)
-        by_itself = rewriting.power == 1 and rewriting.name in domain.field.names_in(below)
-        if not by_itself and domain.sign_of(below).never_zero:
+        divisor = domain.field.of_polynomial(rewriting.replacement.denom)
+        by_itself = rewriting.power == 1 and rewriting.name in domain.field.names_in(divisor)
+        as_sum = rewriting.parameter in below and len(rewriting.replacement.numer) > 1
+        if not by_itself and not as_sum and domain.sign_of(divisor).never_zero:
             found.append(rewriting)
     return tuple(found)

@@ -6,8 +6,8 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 from closedform.algebra.branches import Branch
-from closedform.algebra.equations import linear_solution
 from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.equations import linear_solution
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
@@ -85,6 +85,8 @@ def written_case(
     writing = _writing_field(model, modes, shortenings)
     quantities = [q for mode in modes for q in quantities_of(field, writing, mode)]
     lifted = _lifted(field, writing, domain, quantities, shortenings)
+    terms = _functions(field, writing, modes, branch.exponential, functions)
+    below = _names_below(writing, terms)
     rewritings = sound_rewritings(
         lifted,
         (
@@ -92,13 +94,13 @@ def written_case(
             for s in shortenings
             for r in rewriting_for(writing, s.name, field.into(writing, s.value), s.power)
         ),
+        below,
     )
-    terms = _functions(field, writing, modes, branch.exponential, functions)
     if like is None:
         own = (r for q in quantities for r in rewritings_by_root(field, writing, q))
         costs = {s.name: operations(s.formula(field)) for s in shortenings}
         costs |= dict.fromkeys((q.name for q in quantities), 0)
-        candidates = [*rewritings, *sound_rewritings(lifted, own)]
+        candidates = [*rewritings, *sound_rewritings(lifted, own, below)]
         used = shortest(writing, terms.results, candidates, costs, model.time).used
     else:
         known = {(name, parameter): extent for name, parameter, extent in like.abbreviated}
@@ -168,6 +170,19 @@ def _functions(
 
     results = tuple(part for function in functions for part in terms(function))
     return _Functions(results, terms(exponential))
+
+
+def _names_below(writing: ParameterField, terms: _Functions) -> frozenset[str]:
+    """The parameters in the denominators of amounts and rates."""
+    denominators = {
+        element.denom
+        for function in (*terms.results, *terms.entries)
+        for term in function
+        for element in (term.amount, term.rate)
+        if element
+    }
+    found = (writing.names_in(writing.of_polynomial(d)) for d in denominators)
+    return frozenset().union(*found)
 
 
 def _shortest_under_equations(
@@ -243,9 +258,13 @@ def _lifted(
 ) -> ParameterDomain:
     """The domain over the writing field, with the names that are known to be positive."""
     conditions = [Comparison(field.into(writing, c.element), c.relation) for c in domain.conditions]
-    names = [q.name for q in quantities if q.positive]
-    names += [s.name for s in shortenings if domain.sign_of(s.value).sign == "positive"]
-    conditions += [Comparison(writing.symbol(name), ">") for name in names]
+    conditions += [Comparison(writing.symbol(q.name), ">") for q in quantities if q.positive]
+    for shortening in shortenings:
+        symbol, sign = writing.symbol(shortening.name), domain.sign_of(shortening.value).sign
+        if sign == "positive":
+            conditions.append(Comparison(symbol, ">"))
+        elif sign in ("negative", "nonzero"):
+            conditions.append(Comparison(symbol, "!="))
     return ParameterDomain(writing, tuple(conditions))
 
 

@@ -6,8 +6,8 @@ from collections.abc import Iterator
 from functools import reduce
 from operator import mul
 
-from closedform.algebra.equations import linear_solution
 from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.equations import linear_solution
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.errors import Place

@@ -10,11 +10,12 @@ from __future__ import annotations
 from collections.abc import Iterator
 from itertools import combinations
 
-from closedform.algebra.equations import linear_solution
 from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.equations import linear_solution
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.errors import Place
+from closedform.notation.errors import FormulaError
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -47,12 +48,20 @@ def defined_check(response: ParametricResponse, case: Case) -> Check:
     field = ParameterField(parameters=(*model.field.parameters, *names))
     domain = _with_names(model.field, field, case)
     divisors: dict[Scalar, None] = {}
-    for formula in _formulas(case):
-        read = read_back(model, case, formula)
-        for below in _divisors(read):
-            element = rational_value(below, field, Place())
-            divisors |= dict.fromkeys(_factors(field, element))
-    undecided = [d for d in divisors if not domain.sign_of(d).never_zero]
+    try:
+        for formula in _formulas(case):
+            for below in _divisors(read_back(model, case, formula)):
+                element = rational_value(below, field, Place())
+                divisors |= dict.fromkeys(_factors(field, element))
+    except FormulaError as error:  # its text is longer or deeper than what is read
+        return Check(_ITEM, "not attempted", f"a formula was not read back: {error}")
+    put = _rational_definitions(field, case)
+    undecided = [
+        d
+        for d in divisors
+        if not domain.sign_of(d).never_zero
+        and not domain.sign_of(field.substituted(d, put)).never_zero
+    ]
     if undecided:
         how = f"it was not decided whether {undecided[0]} may vanish"
         return Check(_ITEM, "not attempted", how)
@@ -144,9 +153,22 @@ def _with_names(base: ParameterField, field: ParameterField, case: Case) -> Para
             if sign in ("positive", "negative"):
                 symbol = field.symbol(quantity.name)
                 conditions.append(Comparison(symbol if sign == "positive" else -symbol, ">"))
+            elif sign == "nonzero":
+                conditions.append(Comparison(field.symbol(quantity.name), "!="))
         elif quantity.origin != "roots":
             conditions.append(Comparison(field.symbol(quantity.name), ">"))
     return ParameterDomain(field, tuple(dict.fromkeys(conditions)))
+
+
+def _rational_definitions(field: ParameterField, case: Case) -> dict[str, Scalar]:
+    """The names that stand for rational functions of the parameters, and these."""
+    found: dict[str, Scalar] = {}
+    for quantity in case.quantities:
+        formula = quantity.formula
+        if quantity.origin != "roots" and formula is not None and not _has_root(formula):
+            value = rational_value(formula, field, Place())
+            found[quantity.name] = field.substituted(value, found)
+    return found
 
 
 def _with_equations_put_in(base: ParameterField, case: Case) -> Iterator[Comparison]:
