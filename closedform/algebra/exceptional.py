@@ -86,7 +86,7 @@ def _meeting_pairs(
         if domain.sign_of(discriminant).sign in ("nonnegative", "nonpositive"):
             for polynomial, _ in field.factored(discriminant).factors:
                 made = field.of_polynomial(polynomial)
-                if len(polynomial) > 1 and not domain.sign_of(made).never_zero:
+                if not domain.sign_of(made).never_zero:
                     yield (made,)
 
 

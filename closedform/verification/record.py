@@ -89,6 +89,7 @@ class UnprovedError(InputError):
         return (
             f"{self.model}: the result could not be proved, so no write-up is issued; nothing in "
             f"it was found wrong. Left open: {'; '.join(told)}. As a rule the numbers of the model "
-            "or its instants are too extreme for this proof; ask for less extreme ones, or "
-            "change the time unit of the model."
+            "or its instants are too extreme for this proof, or its parameters leave too much "
+            "open: ask for less extreme numbers, change the time unit of the model, or narrow the "
+            "parameters by assumptions and conditions, or give some of them as numbers."
         )

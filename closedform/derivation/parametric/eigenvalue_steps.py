@@ -11,7 +11,7 @@ from closedform.algebra.spectrum import Factor
 from closedform.derivation.parametric.definitions import Definitions
 from closedform.derivation.parametric.formulas import named_or_written, polynomial_formula
 from closedform.derivation.parametric.reasons import reason_of
-from closedform.derivation.parametric.spectrum import values_of
+from closedform.derivation.parametric.spectrum import certain_index, values_of
 from closedform.derivation.parametric.structure_steps import structure_facts
 from closedform.derivation.parametric.variables import (
     Variables,
@@ -65,6 +65,12 @@ def eigenvalues_step(response: ParametricResponse, letters: Letters) -> Step:
     return Step("factors", (), facts, ("characteristic_polynomial",))
 
 
+def _shared_index(cases: Sequence[Case], place: int) -> int | None:
+    """The index of a factor's eigenvalues, if it is known in all cases."""
+    found = {certain_index(case, place) for case in cases}
+    return found.pop() if len(found) == 1 else None
+
+
 def _row(
     response: ParametricResponse,
     cases: Sequence[Case],
@@ -79,7 +85,7 @@ def _row(
     row: dict[str, object] = {
         "degree": factor.degree,
         "multiplicity": factor.multiplicity,
-        "index": factor.index,
+        "index": _shared_index(cases, place),
         "kinds": kinds,
         "structure": None,
         "statements": (),

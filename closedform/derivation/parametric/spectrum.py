@@ -24,6 +24,7 @@ from closedform.response.parametric.modes import Mode
 
 __all__ = [
     "Eigenvalue",
+    "certain_index",
     "eigenvalues_of",
     "functions_of",
     "kernels_of",
@@ -47,10 +48,28 @@ def eigenvalues_of(field: ParameterField, case: Case) -> list[Eigenvalue]:
     for mode in case.modes:
         double = mode.regime.kind == "double"
         multiplicity = mode.factor.multiplicity * (2 if double else 1)
-        known = case.branch.relation is None and not double
-        index = mode.factor.index if known else None
+        index = certain_index(case, case.modes.index(mode))
         found += [Eigenvalue(v, multiplicity, index) for v in values_of(field, case, mode)]
     return found
+
+
+def certain_index(case: Case, place: int) -> int | None:
+    """Return the index of a factor's eigenvalues where it is the same everywhere in a case.
+
+    At single points the index may be less than that over the field: where the matrix beside
+    the highest power of t vanishes.  None where it is not known that it does not.
+    """
+    factor = case.branch.spectrum.factors[place]
+    if case.branch.relation is not None or case.regimes[place].kind == "double":
+        return None
+    if factor.index == 1:
+        return 1
+    if factor.degree > 1 and case.regimes[place].kind != "circular":
+        return None
+    highest = case.branch.exponential.terms[place].residues[-1]
+    entries = (e for m in highest.coefficients for row in m.to_list() for e in row if e)
+    sure = any(case.domain.sign_of(e).never_zero for e in entries)
+    return factor.index if sure else None
 
 
 def values_of(field: ParameterField, case: Case, mode: Mode) -> Iterator[Side]:

@@ -52,9 +52,9 @@ def structure_facts(field: ParameterField, structure: FactorStructure, n: int) -
         for k, s in enumerate(structure.stable.sums if structure.stable else ())
         if s.element
     ]
-    facts["last"] = sign_statement(
-        field, structure.coefficients[-1].element, structure.coefficients[-1].sign
-    )
+    last = structure.coefficients[-1]
+    if last.sign != "unknown":
+        facts["last"] = sign_statement(field, last.element, last.sign)
     simple = structure.simple
     facts["graph"] = "" if simple is None else simple.graph
     facts["exceptions"] = [

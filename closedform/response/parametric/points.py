@@ -82,7 +82,8 @@ def _completed(field: ParameterField, case: Case, values: dict[str, Fraction]) -
 def _on_a_curve(field: ParameterField, case: Case, count: int, seed: int) -> list[Point]:
     """Leave out one equation, and solve it for one parameter at points of the others."""
     equations = [c for c in case.domain.conditions if c.relation == "="]
-    if len(equations) != 1:
+    equations.sort(key=lambda c: len(c.element.numer))  # one that all others are multiples of
+    if not equations or any(c.element.numer.rem(equations[0].element.numer) for c in equations):
         return []
     others = tuple(c for c in case.domain.conditions if c.relation != "=")
     wider = ParameterDomain(field, others)

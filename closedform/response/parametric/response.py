@@ -89,7 +89,7 @@ class ParametricResponse:
 
     def _repr_latex_(self) -> str:
         """Return the solution as LaTeX for a notebook, a row for each case."""
-        if not any(case.conditions for case in self.cases):
+        if len(self.cases) == 1 and not self.cases[0].conditions:
             return self.cases[0].solution._repr_latex_()
         rows = [f"{_bare(case.solution)} & {_condition_latex(case)}" for case in self.cases]
         body = r" \\[1ex] ".join(rows)

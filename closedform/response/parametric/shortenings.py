@@ -50,9 +50,10 @@ def user_shortenings(model: ParametricModel, branch: Branch) -> Iterator[Shorten
 
 
 def trade_shortenings(
-    field: ParameterField, modes: Sequence[Mode], letters: Letters
+    domain: ParameterDomain, modes: Sequence[Mode], letters: Letters
 ) -> Iterator[Shortening]:
     """The decay rate and the undamped frequency of a pair, and time constants."""
+    field = domain.field
     pairs = [m for m in modes if m.regime.kind in {"circular", "double", "hyperbolic"}]
     damped = [m for m in pairs if m.factor.roots.centre]
     for k, mode in enumerate(damped, start=1):
@@ -61,7 +62,8 @@ def trade_shortenings(
         if len(field.names_in(rate)) > 1 and not _is_bare_product(rate):
             yield Shortening(letters.take("delta", number), rate, 1, "trade")
         square = mode.factor.p.nth(0)
-        if len(field.names_in(square)) > 1 and perfect_root(field, square) is None:
+        real = domain.sign_of(square).sign == "positive"
+        if real and len(field.names_in(square)) > 1 and perfect_root(field, square) is None:
             yield Shortening(letters.take("omega_n", number), square, 2, "trade")
     single = [m.factor.roots.centre for m in modes if m.regime.kind == "single"]
     constants = [1 / -rate for rate in single if rate and rate.numer.is_ground]

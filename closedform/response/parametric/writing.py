@@ -81,7 +81,7 @@ def written_case(
     conditions, domain = selected
     letters = Letters(_taken(model))
     modes = modes_of(field, branch.spectrum.factors, regimes, letters)
-    shortenings = (*user_shortenings(model, branch), *trade_shortenings(field, modes, letters))
+    shortenings = (*user_shortenings(model, branch), *trade_shortenings(domain, modes, letters))
     writing = _writing_field(model, modes, shortenings)
     quantities = [q for mode in modes for q in quantities_of(field, writing, mode)]
     lifted = _lifted(field, writing, domain, quantities, shortenings)

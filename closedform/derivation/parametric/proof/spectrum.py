@@ -229,7 +229,8 @@ def factor_row(ground: Ground, row: Mapping[str, Any], kind: str) -> Iterator[Fi
         if statement.says == "eigenvalue" and kind != "double":
             for value in ground.values(statement.sides[1]):
                 yield from _multiplicity(ground, value, row["multiplicity"])
-                yield from _index(ground, value, row["multiplicity"], row["index"])
+                if row["index"] is not None:
+                    yield from _index(ground, value, row["multiplicity"], row["index"])
 
 
 def _multiplicity(ground: Ground, value: acb, multiplicity: int) -> Iterator[Finding]:
