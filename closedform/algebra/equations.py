@@ -7,7 +7,7 @@ from dataclasses import dataclass, replace
 from closedform.algebra.domain import Comparison, ParameterDomain, SignArgument
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
-from closedform.algebra.sign_argument import ByTerms
+from closedform.algebra.sign_argument import BySquares, ByTerms, Combined
 
 __all__ = ["Equation", "Start", "imposed", "linear_solution"]
 
@@ -69,12 +69,26 @@ def imposed(field: ParameterField, start: Start, polynomial: Scalar) -> Start | 
 def _vanishing_together(
     field: ParameterField, polynomial: Scalar, domain: ParameterDomain
 ) -> tuple[Scalar, ...]:
-    """The parameters that are zero where a sum of terms of one sign is, or none.
+    """What is zero where a sum of terms or squares of one sign is, or nothing.
 
     Each term has to vanish; it does so with one parameter where no other in it may be zero.
     """
-    if len(polynomial.numer) < 2 or not isinstance(domain.sign_of(polynomial).reason, ByTerms):
-        return ()
+    reason = domain.sign_of(polynomial).reason
+    reasons = [a.reason for a in reason.arguments] if isinstance(reason, Combined) else [reason]
+    for found in reasons:
+        if isinstance(found, ByTerms) and len(polynomial.numer) > 1:
+            return _vanishing_terms(field, polynomial, domain)
+        if isinstance(found, BySquares):
+            if not all(domain.sign_of(square.weight).never_zero for square in found.squares):
+                return ()
+            rest = () if found.rest is None else (found.rest.element,)
+            return (*(square.base for square in found.squares), *rest)
+    return ()
+
+
+def _vanishing_terms(
+    field: ParameterField, polynomial: Scalar, domain: ParameterDomain
+) -> tuple[Scalar, ...]:
     found = []
     for monomial in polynomial.numer.monoms():
         names = [n for n, e in zip(field.parameters, monomial, strict=True) if e]

@@ -10,11 +10,13 @@ from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import cached_property, partial
+from itertools import chain
 
 from sympy.polys.domains import QQ
 
 from closedform.algebra.conditions import Conditions, cleared, side
 from closedform.algebra.field import Scalar, rational
+from closedform.algebra.one_parameter import InOneParameter
 from closedform.algebra.parameter_field import Factored, ParameterField, ParameterPolynomial
 from closedform.algebra.sign_argument import (
     ANY,
@@ -61,6 +63,11 @@ class Facts:
         return self.conditions.field
 
     @cached_property
+    def in_one_parameter(self) -> InOneParameter:
+        """What the conditions say about one parameter at a time."""
+        return InOneParameter(self.conditions)
+
+    @cached_property
     def _answers(self) -> dict[tuple[Scalar, int], SignArgument]:
         return {}
 
@@ -80,7 +87,8 @@ class Facts:
             return SignArgument(element, named(side(value)), Constant())
         found: list[SignArgument] = []
         left = ANY
-        for values, reason in self._ways(element, depth, found):
+        last = self.in_one_parameter.signs(element) if depth else ()
+        for values, reason in chain(self._ways(element, depth, found), last):
             if left <= values or not values & left:
                 continue  # nothing new, or the conditions contradict: the first one stays
             left &= values
@@ -94,7 +102,8 @@ class Facts:
     ) -> Iterator[tuple[Values, Reason]]:
         """The arguments for an element that is no number, the plain ones first.
 
-        The long ones are tried only as long as `found`, which the caller fills, is empty.
+        The long ones are tried only as long as `found`, which the caller fills, tells nothing
+        but that the element is not 0.
         """
         yield from self._by_same(element)
         if not _is_parameter(element):
@@ -113,7 +122,8 @@ class Facts:
         if len(polynomial) > LONGEST:
             return
         for way in ways:
-            if found and not _is_parameter(element):
+            known = any(argument.sign != "nonzero" for argument in found)
+            if known and not _is_parameter(element):
                 return
             yield from way(polynomial, depth)
         yield from self._by_terms(element)
@@ -156,6 +166,8 @@ class Facts:
             if self.field.constant(multiple) is not None:
                 continue  # asked before
             values, strict = ANY, 0 not in condition.values
+            if len(self.field.names_in(element) | self.field.names_in(multiple)) == 1:
+                depth = 1  # what is not short is told by cells
             argument = self._by_known_factors(multiple, depth)
             lost = [f for f, e in theirs.items() if e > max(mine.get(f, 0), 0)]
             if strict or all(self._known(f, depth).never_zero for f in lost):
