@@ -5,19 +5,17 @@ from __future__ import annotations
 from fractions import Fraction
 from functools import cache
 
-import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
 from closedform.algebra.branches import (
     Branch,
-    Equation,
     case_tree,
-    linear_solution,
     put_in,
     uncovered,
 )
 from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.equations import Equation
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.parametric_spectrum import vanishes_under
 from closedform.algebra.sample import holds_at, value_at
@@ -136,28 +134,6 @@ def test_an_equation_that_no_parameter_solves_is_kept() -> None:
     given_polynomial = field.polynomial(branch.matrix.charpoly())
     difference = given_polynomial - branch.spectrum.characteristic_polynomial
     assert all(vanishes_under(c, relation) for c in difference.to_list())
-
-
-@pytest.mark.parametrize(
-    ("text", "name", "value"),
-    [
-        ("a - b", "a", "b"),
-        ("a*b + c", "b", "-c/a"),
-        ("(a - b)/c", "b", "a"),
-        ("a^2 - b", "a", None),
-        ("a - b", "c", None),
-        ("a*b - a", "a", "0"),
-    ],
-)
-def test_an_equation_is_solved_for_a_parameter_in_which_it_is_linear(
-    text: str, name: str, value: str | None
-) -> None:
-    field = field_of("a b c")
-    expected = None if value is None else element(field, value)
-    found = linear_solution(field, element(field, text), name)
-    assert found == expected
-    if found is not None:
-        assert not field.substituted(element(field, text), {name: found})
 
 
 def test_nothing_is_put_in_where_there_are_no_values() -> None:

@@ -14,6 +14,7 @@ from random import Random
 
 from closedform.algebra.branches import Branch, Exceptional
 from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.equations import linear_solution
 from closedform.algebra.exceptional import discriminant_of
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
@@ -108,7 +109,12 @@ def _is_excluded(field: ParameterField, branch: Branch, exceptional: Exceptional
     elif len(left) == 1 and branch.relation is None:
         same = argument.element in (*exceptional.polynomials, *left)
         reason = same and branch.domain.sign_of(argument.element).sign == argument.sign
-    else:  # it may be about what is left of one equation where another is put in
+    elif len(left) == 1:  # or it is about what the relation is where the polynomial vanishes
+        solved = {n: linear_solution(field, left[0], n) for n in field.parameters}
+        put = [{name: value} for name, value in solved.items() if value is not None]
+        relations = [field.substituted(branch.relation, values) for values in put]
+        reason = argument.element in (*exceptional.polynomials, *left, *relations)
+    else:  # it may be about one of them where the others vanish
         reason = True
     return reason and is_empty(field, where)
 
@@ -127,6 +133,8 @@ def _must_not_vanish(field: ParameterField, branch: Branch) -> Iterator[Scalar]:
         for element in elements:
             yield from _factors(field, field.of_polynomial(element.denom))
         factor = term.factor
+        if factor.degree > 2 and factor.roots.form == "even" and factor.roots.squares is not None:
+            yield from _factors(field, field.of_polynomial(factor.roots.squares.nth(0).numer))
         if factor.degree > 2 and (structure is None or structure.simple is None):
             squares = factor.roots.squares if factor.roots.form == "even" else None
             roots_of = factor.p if squares is None else squares
