@@ -41,8 +41,9 @@ def imposed(field: ParameterField, start: Start, polynomial: Scalar) -> Start | 
         return start
     factors = [field.of_polynomial(f) for f, e in field.factored(left).factors if e > 0]
     open_ones = [f for f in factors if not domain.sign_of(f).never_zero]
-    if not open_ones:
-        return domain.sign_of(left)
+    if not open_ones:  # the domain may hold the equation itself already, which says nothing
+        arguments = (domain.sign_of(left), *map(domain.sign_of, factors))
+        return next(a for a in arguments if a.never_zero)
     if len(open_ones) > 1:
         return "several equations"
     together = _vanishing_together(field, open_ones[0], domain)

@@ -113,7 +113,8 @@ def _is_excluded(field: ParameterField, branch: Branch, exceptional: Exceptional
         solved = {n: linear_solution(field, left[0], n) for n in field.parameters}
         put = [{name: value} for name, value in solved.items() if value is not None]
         relations = [field.substituted(branch.relation, values) for values in put]
-        reason = argument.element in (*exceptional.polynomials, *left, *relations)
+        parts = [f for relation in relations if relation for f in _factors(field, relation)]
+        reason = argument.element in (*exceptional.polynomials, *left, *relations, *parts)
     else:  # it may be about one of them where the others vanish
         reason = True
     return reason and is_empty(field, where)
