@@ -47,10 +47,16 @@ class ParameterDomain:
         return self._facts.sign_of(element)
 
     def excludes(self, comparison: Comparison) -> SignArgument | None:
-        """Return why the comparison holds nowhere here, or None if no reason is found."""
-        argument = self.sign_of(comparison.element)
-        apart = not argument.values & relation_values(comparison.relation)
-        return argument if apart else None
+        """Return why the comparison holds nowhere here, or None if no reason is found.
+
+        Where the domain is found to be empty, it is why one of its own conditions fails.
+        """
+        argument = _sign_against(self, comparison)
+        wrong = self._facts.in_one_parameter.contradiction() if argument is None else None
+        for condition in wrong or ():
+            others = tuple(c for c in wrong or () if c is not condition)
+            argument = argument or _sign_against(ParameterDomain(self.field, others), condition)
+        return argument
 
     def implies(self, comparison: Comparison) -> SignArgument | None:
         """Return why the comparison holds everywhere here, or None if no reason is found.
@@ -68,14 +74,17 @@ class ParameterDomain:
 
         None of those returned can be left out without losing the argument.
         """
+        found = self._facts.in_one_parameter.contradiction()
+        if found is not None:
+            return found
         for place, condition in enumerate(self.conditions):
             others = self.conditions[:place] + self.conditions[place + 1 :]
-            if not ParameterDomain(self.field, others).excludes(condition):
+            if not _sign_against(ParameterDomain(self.field, others), condition):
                 continue
             needed = list(others)
             for other in others:
                 fewer = tuple(c for c in needed if c is not other)
-                if ParameterDomain(self.field, fewer).excludes(condition):
+                if _sign_against(ParameterDomain(self.field, fewer), condition):
                     needed.remove(other)
             return tuple(c for c in self.conditions if c is condition or c in needed)
         return None
@@ -108,3 +117,10 @@ class ParameterDomain:
         search finds no more: this does not say that the domain is empty.
         """
         return sample_points(self.field, self.conditions, count, seed)
+
+
+def _sign_against(domain: ParameterDomain, comparison: Comparison) -> SignArgument | None:
+    """The sign of an element with which a comparison does not hold, or None."""
+    argument = domain.sign_of(comparison.element)
+    apart = not argument.values & relation_values(comparison.relation)
+    return argument if apart else None

@@ -14,7 +14,9 @@ from closedform.algebra.field import Scalar
 
 __all__ = [
     "ANY",
+    "RELATIONS",
     "SIGN_VALUES",
+    "ByCells",
     "ByCondition",
     "ByExpansion",
     "ByFactors",
@@ -30,6 +32,7 @@ __all__ = [
     "Square",
     "Undecided",
     "Values",
+    "Whereabouts",
     "named",
     "negated",
     "power",
@@ -39,8 +42,10 @@ __all__ = [
 ]
 
 Relation = Literal[">", ">=", "!=", "="]
+RELATIONS: tuple[Relation, ...] = (">", ">=", "!=", "=")
 Sign = Literal["positive", "negative", "nonnegative", "nonpositive", "nonzero", "zero", "unknown"]
 Values = frozenset[int]
+Whereabouts = Literal["no zeros", "zeros", "below", "between", "above", "several"]
 
 SIGN_VALUES: dict[Sign, Values] = {
     "positive": frozenset({1}),
@@ -53,7 +58,7 @@ SIGN_VALUES: dict[Sign, Values] = {
 }
 ANY = SIGN_VALUES["unknown"]
 _NAMES: dict[Values, Sign] = {values: sign for sign, values in SIGN_VALUES.items()}
-_RELATIONS: dict[Relation, Values] = {
+_HOLDING: dict[Relation, Values] = {
     ">": SIGN_VALUES["positive"],
     ">=": SIGN_VALUES["nonnegative"],
     "!=": SIGN_VALUES["nonzero"],
@@ -122,12 +127,25 @@ class ByExpansion:
 
     The condition is linear in the parameter `name`, and no coefficient holds this one: it
     is replaced by its bound and the distance from it.  For an equation only the first
-    coefficient counts.
+    coefficient counts; its parameter may then have a coefficient that holds others.
     """
 
     comparison: Comparison
     name: str
     coefficients: tuple[SignArgument, ...]
+
+
+@dataclass(frozen=True)
+class ByCells:
+    """The element holds one parameter; its sign is known between and at its zeros in this.
+
+    The comparisons follow from the conditions and hold this parameter only; `where` says
+    where they leave it, seen from the element's zeros and poles.
+    """
+
+    name: str
+    comparisons: tuple[Comparison, ...]
+    where: Whereabouts
 
 
 @dataclass(frozen=True)
@@ -143,7 +161,15 @@ class Undecided:
 
 
 Reason = (
-    Constant | ByCondition | ByTerms | BySquares | ByFactors | ByExpansion | Combined | Undecided
+    Constant
+    | ByCondition
+    | ByTerms
+    | BySquares
+    | ByFactors
+    | ByExpansion
+    | ByCells
+    | Combined
+    | Undecided
 )
 
 
@@ -173,7 +199,7 @@ def named(values: Values) -> Sign:
 
 def relation_values(relation: Relation) -> Values:
     """Return the signs with which a comparison holds."""
-    return _RELATIONS[relation]
+    return _HOLDING[relation]
 
 
 def negated(values: Values) -> Values:

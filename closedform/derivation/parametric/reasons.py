@@ -12,6 +12,7 @@ from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.sign_argument import (
+    ByCells,
     ByCondition,
     ByExpansion,
     ByFactors,
@@ -23,11 +24,13 @@ from closedform.algebra.sign_argument import (
     SignArgument,
     Square,
     Undecided,
+    Whereabouts,
 )
 from closedform.derivation.parametric.formulas import compared, sign_statement
 from closedform.derivation.step import Side, Statement
 from closedform.notation.expression import (
     Expression,
+    Name,
     Negation,
     Sum,
     operations,
@@ -49,6 +52,14 @@ SIGNS: dict[Sign, str] = {
     "nonzero": "are not zero",
     "zero": "are zero",
     "unknown": "may have any sign",
+}
+
+WHERE: dict[Whereabouts, str] = {
+    "zeros": ", at its {zeros} in",
+    "below": ", as it is below its {zeros} in",
+    "between": ", as it is between its {zeros} in",
+    "above": ", as it is above its {zeros} in",
+    "several": ", by its signs between its {zeros} in",
 }
 
 
@@ -73,6 +84,8 @@ def reason_of(field: ParameterField, argument: SignArgument, *, deep: bool = Fal
             return [said, ", by its factors:", *_by_factors(field, factors, deep=deep)]
         case ByExpansion(comparison, _, coefficients):
             return _by_expansion(field, argument, comparison, coefficients, deep=deep)
+        case ByCells(name, comparisons, where):
+            return _by_cells(field, argument, name, comparisons, where)
         case Combined(arguments):
             telling = [a for a in arguments if not isinstance(a.reason, Undecided)]
             best = [a for a in telling if a.sign == argument.sign] or telling
@@ -182,7 +195,9 @@ def _by_expansion(
     said = sign_statement(field, argument.element, argument.sign)
     if comparison.relation == "=":
         first = coefficients[0]
-        return [said, ", as it is", _expression(field, first.element), "where", condition]
+        put: Sentence = [said, ", as it is", _expression(field, first.element), "where", condition]
+        known = field.constant(first.element) is not None
+        return put if known or not deep else [*put, ", ", *_part(field, first, deep=True)]
     base = rational_formula(field, comparison.element)
     terms = [
         product([rational_formula(field, c.element), power_of(base, k)])
@@ -198,6 +213,27 @@ def _by_expansion(
             if c.element and field.constant(c.element) is None:
                 sentence += [", ", *_part(field, c, deep=True)]
     return sentence
+
+
+def _by_cells(
+    field: ParameterField,
+    argument: SignArgument,
+    name: str,
+    comparisons: Sequence[Comparison],
+    where: Whereabouts,
+) -> Sentence:
+    """Where conditions leave the parameter, seen from the zeros and poles of the element."""
+    element = argument.element
+    said = sign_statement(field, element, argument.sign)
+    known = _joined([compared(field, c, "condition") for c in comparisons])
+    polynomial = element.denom.is_ground
+    if where in ("below", "above") and polynomial and max(map(sum, element.numer.monoms())) == 1:
+        return [said, ", by", *known]
+    zeros = "zeros" if polynomial else "zeros and poles"
+    if where == "no zeros":
+        return [said, f", as it has no real {zeros} in", Name(name)]
+    sentence: Sentence = [said, WHERE[where].format(zeros=zeros), Name(name)]
+    return [*sentence, "where", *known] if known else sentence
 
 
 def _expression(field: ParameterField, element: Scalar) -> Side:
