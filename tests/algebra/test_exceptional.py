@@ -40,7 +40,9 @@ def exceptions(field: ParameterField, rows: list[list[str]]) -> list[tuple[Scala
     matrix = field.matrix([[element(field, e) for e in row] for row in rows])
     spectrum = parametric_spectrum(field, matrix)
     exponential = exponential_by_resolvent(field, matrix, spectrum)
-    return list(exceptional_elements(field, exponential, [None] * len(spectrum.factors)))
+    structures = [None] * len(spectrum.factors)
+    everywhere = ParameterDomain(field, ())
+    return list(exceptional_elements(field, exponential, structures, everywhere))
 
 
 @given(st.lists(st.sampled_from(ROOTS), min_size=2, max_size=3))
