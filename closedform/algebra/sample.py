@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import random
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
+from dataclasses import dataclass
 from fractions import Fraction
 
+from closedform.algebra.cell_points import only_name, points_in_cells
 from closedform.algebra.field import Scalar, rational
 from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
 from closedform.algebra.sign_argument import Comparison, relation_values
@@ -13,6 +15,8 @@ from closedform.algebra.squares import coefficients_in
 
 __all__ = ["holds_at", "sample_points", "value_at"]
 
+FEW = 5
+"""So many points at most are looked for in cells."""
 TRIES = 200
 """Tries for each point asked for, and at least ten times as many in all."""
 SCALES = ((6, 1), (9, 2), (20, 4), (40, 10), (100, 1), (6, 20), (9, 200), (3000, 1))
@@ -70,30 +74,86 @@ def sample_points(
     """Return up to `count` different points at which the conditions hold.
 
     Equations are solved for a parameter in which one of their factors is linear; the
-    others are drawn, different from each other, until the conditions hold.
+    others are drawn, different from each other, until the conditions hold.  Where this finds
+    few points, all parameters but one are drawn, and the last one is taken from what the
+    conditions leave to it then.
     """
+    found: list[dict[str, Fraction]] = []
     solved = _solved(field, conditions)
-    if solved is None:
-        return []
+    if solved is not None:
+        drawn = _drawn_points(field, conditions, solved, TRIES * max(count, 10), seed)
+        _keep(_Asked.of(field, conditions, solved), drawn, count, found)
+    few = min(count, FEW)
+    if len(found) < few:
+        alone = [c for c in conditions if c.relation == "=" and only_name(field, c)]
+        kept = frozenset(n for c in alone for n in only_name(field, c))
+        solved = _solved(field, [c for c in conditions if c not in alone], kept)
+        if solved is not None:
+            drawn = points_in_cells(field, conditions, solved, seed)
+            _keep(_Asked.of(field, conditions, solved), drawn, few, found)
+    return found
+
+
+@dataclass(frozen=True)
+class _Asked:
+    """What is asked of a point: values of solved parameters to put in, and conditions."""
+
+    names: tuple[str, ...]
+    solved: dict[str, tuple[Terms, Terms]]
+    conditions: tuple[tuple[Comparison, Terms, Terms], ...]
+
+    @classmethod
+    def of(
+        cls,
+        field: ParameterField,
+        conditions: Sequence[Comparison],
+        solved: dict[str, Scalar],
+    ) -> _Asked:
+        put = {n: (_terms(e.numer), _terms(e.denom)) for n, e in reversed(solved.items())}
+        asked = [(c, _terms(c.element.numer), _terms(c.element.denom)) for c in conditions]
+        return cls(field.parameters, put, tuple(asked))
+
+    def completed(self, point: dict[str, Fraction]) -> dict[str, Fraction] | None:
+        """Return the point with all parameters, or None where a condition does not hold."""
+        if not _completed(point, self.solved):
+            return None
+        if all(_holds(_quotient(above, below, point), c) for c, above, below in self.conditions):
+            return {n: point[n] for n in self.names}
+        return None
+
+
+def _keep(
+    asked: _Asked,
+    points: Iterable[dict[str, Fraction]],
+    count: int,
+    found: list[dict[str, Fraction]],
+) -> None:
+    """Add points at which all conditions hold until there are `count` different ones."""
+    if len(found) >= count:
+        return
+    for point in points:
+        whole = asked.completed(point)
+        if whole is not None and whole not in found:
+            found.append(whole)
+            if len(found) >= count:
+                return
+
+
+def _drawn_points(
+    field: ParameterField,
+    conditions: Sequence[Comparison],
+    solved: Mapping[str, Scalar],
+    tries: int,
+    seed: int,
+) -> Iterator[dict[str, Fraction]]:
+    """Yield values of the parameters that are not solved."""
     signs = _drawn_signs(field, conditions)
     free = [n for n in field.parameters if n not in solved]
-    put = {n: (_terms(e.numer), _terms(e.denom)) for n, e in reversed(solved.items())}
-    asked = [(c, _terms(c.element.numer), _terms(c.element.denom)) for c in conditions]
     draw = random.Random(seed)  # noqa: S311  (points to look at, no secret)
-    found: list[dict[str, Fraction]] = []
-    for attempt in range(TRIES * max(count, 10)):
-        if len(found) >= count:
-            break
+    for attempt in range(tries):
         one = SCALES[attempt % len(SCALES)]
         scales = {n: draw.choice(SCALES) if attempt % 2 else one for n in free}
-        point = _drawn(scales, signs, draw)
-        if not _completed(point, put):
-            continue
-        if all(_holds(_quotient(above, below, point), c) for c, above, below in asked):
-            ordered = {n: point[n] for n in field.parameters}
-            if ordered not in found:
-                found.append(ordered)
-    return found
+        yield _drawn(scales, signs, draw)
 
 
 def _completed(point: dict[str, Fraction], put: Mapping[str, tuple[Terms, Terms]]) -> bool:
@@ -106,8 +166,13 @@ def _completed(point: dict[str, Fraction], put: Mapping[str, tuple[Terms, Terms]
     return True
 
 
-def _solved(field: ParameterField, conditions: Sequence[Comparison]) -> dict[str, Scalar] | None:
-    """The parameters that equations give, each by those that are not solved before it."""
+def _solved(
+    field: ParameterField, conditions: Sequence[Comparison], kept: frozenset[str] = frozenset()
+) -> dict[str, Scalar] | None:
+    """The parameters that equations give, each by those that are not solved before it.
+
+    Those of `kept` are not solved.  None where an equation is linear in no other.
+    """
     solved: dict[str, Scalar] = {}
     for condition in conditions:
         if condition.relation != "=":
@@ -117,19 +182,21 @@ def _solved(field: ParameterField, conditions: Sequence[Comparison]) -> dict[str
             element = field.substituted(element, {name: value})
         if not element:
             continue
-        found = _linear_root(field, element)
+        found = _linear_root(field, element, kept)
         if found is None:
             return None
         solved[found[0]] = found[1]
     return solved
 
 
-def _linear_root(field: ParameterField, element: Scalar) -> tuple[str, Scalar] | None:
+def _linear_root(
+    field: ParameterField, element: Scalar, kept: frozenset[str]
+) -> tuple[str, Scalar] | None:
     for factor, exponent in field.factored(element).factors:
         if exponent < 0:
             continue
         for place, name in reversed(list(enumerate(field.parameters))):
-            if factor.degree(factor.ring.gens[place]) == 1:
+            if name not in kept and factor.degree(factor.ring.gens[place]) == 1:
                 free, slope = map(field.of_polynomial, coefficients_in(factor, place))
                 return name, -free / slope
     return None

@@ -8,7 +8,7 @@ from hypothesis import strategies as st
 
 from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.sample import holds_at, value_at
-from tests.sign_checks import FIELD, A, B, C, Point, domains, grid, positive
+from tests.sign_checks import FIELD, A, B, C, Point, domains, field_of, grid, positive
 
 POSITIVE = positive("a b c")
 
@@ -139,6 +139,41 @@ def test_points_are_found_in_usual_domains(conditions: tuple[Comparison, ...]) -
     points = domain.sample(3, 7)
     assert len(points) == 3
     assert len(POSITIVE.sample(1, 0)[0]) == len(set(POSITIVE.sample(1, 0)[0].values()))
+
+
+@pytest.mark.parametrize(
+    "conditions",
+    [
+        (Comparison(A**2 - 4, "="),),
+        (Comparison(A**2 - 4, "="), Comparison(B - A * C, "=")),
+        (Comparison(A**2 - 3 * A + 2, "="), Comparison(A - 1, ">")),
+        (Comparison(108 * A - 1, "="),),
+        (Comparison(1001 * A - 1000, ">"), Comparison(1000 - 1000 * A, ">")),
+        (Comparison(A**2 - 2, ">"), Comparison(20001 - 10000 * A**2, ">")),
+        (Comparison(A * B - 1, "="), Comparison(2001 - 1000 * B, ">"), Comparison(B - 2, ">")),
+        (Comparison(A * B - 7, ">"), Comparison(7001 - 1000 * A * B, ">")),
+        (Comparison(A**2 - B**2 * C**2, "="), Comparison(B + C - 3, ">")),
+        (Comparison(-((A - 3) ** 2), ">="),),
+        (Comparison(-((A**2 - 3 * A) ** 2), ">="), Comparison(A - B, ">"), Comparison(B - 2, ">")),
+    ],
+)
+def test_a_point_is_found_where_little_is_left_to_a_parameter(
+    conditions: tuple[Comparison, ...],
+) -> None:
+    domain = ParameterDomain(FIELD, (*POSITIVE.conditions, *conditions))
+    points = domain.sample(2, 7)
+    assert len(points) == 2
+    assert all(holds_at(c, p) for p in points for c in domain.conditions)
+
+
+def test_all_rational_values_are_found_where_these_are_finitely_many() -> None:
+    field = field_of("a")
+    a = field.symbol("a")
+    isolated = Comparison(-(((a - 1) * (a - 2) * (a**2 - 2)) ** 2), ">=")
+    domain = ParameterDomain(field, (isolated,))
+    assert sorted(p["a"] for p in domain.sample(5, 1)) == [1, 2]
+    irrational = ParameterDomain(field, (Comparison(a**2 - 2, "="),))
+    assert irrational.sample(1, 1) == []
 
 
 def test_an_empty_domain_gives_no_points() -> None:
