@@ -1,7 +1,8 @@
 """Why an element has a sign: arguments as sentences of words and mathematics.
 
 A sentence is a list of texts and statements.  What it states is proved as printed; that a
-sum of squares, or of terms of one sign, has that sign is left to the reader's eye.
+sum of squares, or of terms of one sign, has that sign is left to the reader's eye, and so is
+between which zeros of an element its parameter lies.
 """
 
 from __future__ import annotations
@@ -55,12 +56,12 @@ SIGNS: dict[Sign, str] = {
 }
 
 WHERE: dict[Whereabouts, str] = {
-    "zeros": ", at its {zeros} in",
-    "below": ", as it is below its {zeros} in",
-    "between": ", as it is between its {zeros} in",
-    "above": ", as it is above its {zeros} in",
-    "several": ", by its signs between its {zeros} in",
+    "zeros": "is one of its zeros",
+    "below": "lies below every zero",
+    "between": "lies between two zeros",
+    "above": "lies above every zero",
 }
+"""Where conditions leave a parameter, seen from the zeros of an element."""
 
 
 def reason_of(field: ParameterField, argument: SignArgument, *, deep: bool = False) -> Sentence:
@@ -222,18 +223,23 @@ def _by_cells(
     comparisons: Sequence[Comparison],
     where: Whereabouts,
 ) -> Sentence:
-    """Where conditions leave the parameter, seen from the zeros and poles of the element."""
     element = argument.element
     said = sign_statement(field, element, argument.sign)
     known = _joined([compared(field, c, "condition") for c in comparisons])
-    polynomial = element.denom.is_ground
-    if where in ("below", "above") and polynomial and max(map(sum, element.numer.monoms())) == 1:
+    whole = element.denom.is_ground
+    if known and whole and max(map(sum, element.numer.monoms())) == 1:
         return [said, ", by", *known]
-    zeros = "zeros" if polynomial else "zeros and poles"
+    poles = " or pole" if where in ("below", "above", "no zeros") else " or poles"
+    if whole or where == "zeros":
+        poles = ""
+    sentence: Sentence
     if where == "no zeros":
-        return [said, f", as it has no real {zeros} in", Name(name)]
-    sentence: Sentence = [said, WHERE[where].format(zeros=zeros), Name(name)]
-    return [*sentence, "where", *known] if known else sentence
+        return [said, f", as it has no real zero{poles} in", Name(name)]
+    if where == "several":
+        sentence = [said, f", by its signs between its zeros{poles} in", Name(name)]
+    else:
+        sentence = [said, ", as", Name(name), WHERE[where] + poles]
+    return [*sentence, ", by", *known] if known else sentence
 
 
 def _expression(field: ParameterField, element: Scalar) -> Side:
