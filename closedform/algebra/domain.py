@@ -49,6 +49,7 @@ class ParameterDomain:
     def excludes(self, comparison: Comparison) -> SignArgument | None:
         """Return why the comparison holds nowhere here, or None if no reason is found.
 
+        It tells the sign of the element, or that its denominator is zero everywhere.
         Where the domain is found to be empty, it is why one of its own conditions fails.
         """
         argument = _sign_against(self, comparison)
@@ -120,7 +121,9 @@ class ParameterDomain:
 
 
 def _sign_against(domain: ParameterDomain, comparison: Comparison) -> SignArgument | None:
-    """The sign of an element with which a comparison does not hold, or None."""
+    """The sign with which a comparison holds nowhere: of its element, or of the denominator."""
     argument = domain.sign_of(comparison.element)
-    apart = not argument.values & relation_values(comparison.relation)
-    return argument if apart else None
+    if not argument.values & relation_values(comparison.relation):
+        return argument
+    below = domain.sign_of(domain.field.of_polynomial(comparison.element.denom))
+    return below if below.sign == "zero" else None

@@ -18,7 +18,7 @@ from closedform.algebra.univariate import (
     sign_by_cells,
     simplest_between,
 )
-from tests.sign_checks import field_of, sign_at
+from tests.sign_checks import field_of, is_never_wrong, sign_at
 
 FIELD = field_of("h k")
 H, K = (FIELD.symbol(n) for n in FIELD.parameters)
@@ -34,7 +34,8 @@ ELEMENTS = st.one_of(
     st.builds(lambda p, q: p * q, POLYNOMIALS, LINEAR),
     st.builds(lambda p, q: p / q, POLYNOMIALS, st.one_of(LINEAR, POLYNOMIALS.filter(bool))),
 ).filter(lambda e: FIELD.constant(e) is None)
-COMPARISONS = st.builds(Comparison, ELEMENTS, st.sampled_from((">", ">=", "!=", "=")))
+RELATIONS = st.sampled_from((">", ">=", "!=", "="))
+COMPARISONS = st.builds(Comparison, ELEMENTS, RELATIONS)
 
 
 def domain_of(*comparisons: tuple[Scalar, str]) -> ParameterDomain:
@@ -121,6 +122,38 @@ def test_a_domain_in_one_parameter_is_empty_exactly_if_a_contradiction_is_found(
     assert (domain.excludes(other) is not None) == joined
 
 
+JOINT = st.sampled_from(
+    (H * K - 1, 108 * H * K - 1, (H - 1) * K - H**2, H * (H * K + K - 2), K - H**2 + 2, 2 * H - 3)
+)
+IN_BOTH = st.lists(
+    st.tuples(st.integers(-2, 2), st.integers(0, 2), st.integers(0, 2)), min_size=1, max_size=3
+).map(lambda terms: sum((c * H**i * K**j for c, i, j in terms), ZERO))
+IN_K = st.lists(st.integers(-3, 3), min_size=2, max_size=4).map(
+    lambda c: sum((n * K**j for j, n in enumerate(c)), ZERO)
+)
+
+
+@given(
+    JOINT,
+    st.lists(st.builds(Comparison, st.one_of(IN_BOTH, IN_K, ELEMENTS), RELATIONS), max_size=2),
+    st.one_of(IN_BOTH, IN_K, st.builds(lambda p, q: p / q, IN_BOTH, IN_BOTH.filter(bool))),
+)
+def test_no_sign_is_wrong_after_an_equation(
+    equation: Scalar, comparisons: list[Comparison], element: Scalar
+) -> None:
+    domain = ParameterDomain(FIELD, (Comparison(equation, "="), *comparisons))
+    points = []
+    for value in GRID:
+        put = FIELD.substituted(equation, {"h": FIELD.scalar(value)})
+        slope = FIELD.constant(FIELD.derivative(put, "k"))
+        free = FIELD.constant(FIELD.substituted(put, {"k": ZERO}))
+        points += [{"h": value, "k": k} for k in ([-free / slope] if slope else GRID[:9])]
+    held = [p for p in points if all(holds_at(c, p) for c in domain.conditions)]
+    assert is_never_wrong(domain.sign_of(element), held)
+    if held:
+        assert domain.contradiction() is None
+
+
 @given(st.fractions(max_denominator=50), st.fractions(max_denominator=50))
 def test_the_simplest_fraction_lies_between_and_no_simpler_one_does(
     first: Fraction, second: Fraction
@@ -201,6 +234,13 @@ def test_contradictions_in_one_parameter(
     found = domain.contradiction()
     assert found == (None if places is None else tuple(domain.conditions[k] for k in places))
     assert (domain.excludes(Comparison(K - 17, "!=")) is None) == (places is None)
+
+
+def test_what_is_defined_nowhere_is_excluded() -> None:
+    domain = domain_of((H - 1, "="))
+    argument = domain.excludes(Comparison(H / (H - 1), ">="))
+    assert argument is not None
+    assert (argument.element, argument.sign) == (H - 1, "zero")
 
 
 def test_too_high_a_degree_is_left_alone() -> None:
