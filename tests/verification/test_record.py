@@ -49,8 +49,9 @@ def test_the_error_names_the_model_the_open_checks_and_what_to_do() -> None:
     assert str(UnprovedError("bench", (OPEN,))) == (
         "bench: the result could not be proved, so no write-up is issued; nothing in it was found "
         "wrong. Left open: d: too wide. As a rule the numbers of the model or its instants are "
-        "too extreme for this proof; ask for less extreme ones, or change the time unit of the "
-        "model."
+        "too extreme for this proof, or its parameters leave too much open: ask for less extreme "
+        "numbers, change the time unit of the model, or narrow the parameters by assumptions and "
+        "conditions, or give some of them as numbers."
     )
 
 

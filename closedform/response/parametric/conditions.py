@@ -39,7 +39,11 @@ def written_comparison(domain: ParameterDomain, comparison: Comparison) -> Writt
     field = domain.field
     element, turned = _undecided_part(domain, comparison)
     relation: Sign = "==" if comparison.relation == "=" else comparison.relation
-    if comparison.relation == ">" and (root := perfect_root(field, element)) is not None:
+    if (
+        comparison.relation == ">"
+        and not turned
+        and (root := perfect_root(field, element)) is not None
+    ):
         element, relation, turned = root, "!=", False
     single = _of_one_parameter(field, element)
     if single is not None:

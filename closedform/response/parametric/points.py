@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from typing import Any
 
@@ -16,7 +16,7 @@ from closedform.algebra.sample import holds_at
 from closedform.algebra.surds import SurdSum
 from closedform.response.parametric.case import Case
 
-__all__ = ["Point", "border_points", "case_points"]
+__all__ = ["Point", "border_points", "case_points", "points_beside"]
 
 
 @dataclass(frozen=True)
@@ -55,6 +55,16 @@ def case_points(field: ParameterField, case: Case, count: int, *, seed: int = 1)
     """Return up to `count` points of a case, the same each time; fewer if few are found."""
     points = [_completed(field, case, values) for values in case.domain.sample(count, seed)]
     return points or _on_a_curve(field, case, count, seed)
+
+
+def points_beside(field: ParameterField, case: Case, count: int) -> list[Point]:
+    """Return points at which the equations of a case hold, whatever its other conditions say.
+
+    For a case of which no point is known: its formulas are identities there too, wherever
+    they have a value.
+    """
+    equations = tuple(c for c in case.domain.conditions if c.relation == "=")
+    return case_points(field, replace(case, domain=ParameterDomain(field, equations)), count)
 
 
 def border_points(field: ParameterField, case: Case) -> list[Point]:

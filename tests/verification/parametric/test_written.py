@@ -8,6 +8,9 @@ import pytest
 
 from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.notation import read_formula
+from closedform.notation.expression import Name
+from closedform.response.parametric.case import Case
+from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.written import POINTS, formula_check
 from tests.verification.parametric.spoiling import KINDS, response_to, with_case, with_formula
 
@@ -53,13 +56,22 @@ def test_a_formula_without_a_real_value_is_refuted() -> None:
     assert "has no value" in check.how
 
 
-def test_the_formulas_of_a_case_without_known_points_are_not_said_to_agree() -> None:
+def test_the_formulas_of_a_case_without_known_points_are_tried_beside_it() -> None:
     response = response_to("rates")
     field = response.model.field
     empty = ParameterDomain(field, (Comparison(-(field.symbol("a") ** 2), ">"),))
-    spoiled = with_case(response, 0, domain=empty)
-    check = formula_check(spoiled, spoiled.cases[0])
-    assert check.outcome == "not attempted"
+    check = formula_check(*_in_domain(response, empty))
+    assert check.outcome == "enclosed"
+    assert "no values were found that belong to the case" in check.how
+    wrong = with_formula(response, 0, ("solution", 0), Name("a"))
+    assert formula_check(*_in_domain(wrong, empty)).outcome == "refuted"
+
+
+def _in_domain(
+    response: ParametricResponse, domain: ParameterDomain
+) -> tuple[ParametricResponse, Case]:
+    changed = with_case(response, 0, domain=domain)
+    return changed, changed.cases[0]
 
 
 def test_borders_where_a_parameter_is_zero_are_tried_too() -> None:
