@@ -95,7 +95,8 @@ class InOneParameter:
                 if wrong is not None:
                     wanted = [pairs[k][0] for k in wrong]
                     wanted += [solved.comparison] if solved else []
-                    return tuple(c for c in self.conditions.comparisons if c in wanted)
+                    asked = dict.fromkeys(self.conditions.comparisons)
+                    return tuple(c for c in asked if c in wanted)
         return None
 
     def _wrong(self, comparisons: list[Comparison]) -> tuple[int, ...] | None:

@@ -236,6 +236,13 @@ def test_contradictions_in_one_parameter(
     assert (domain.excludes(Comparison(K - 17, "!=")) is None) == (places is None)
 
 
+def test_a_condition_that_is_said_twice_contradicts_once() -> None:
+    never = (H**4 + 2 * H**3 + 2, "=")
+    domain = domain_of((H, ">"), never, never)
+    assert domain.contradiction() == domain.conditions[1:2]
+    assert domain.excludes(Comparison(H, ">"))
+
+
 def test_what_is_defined_nowhere_is_excluded() -> None:
     domain = domain_of((H - 1, "="))
     argument = domain.excludes(Comparison(H / (H - 1), ">="))
