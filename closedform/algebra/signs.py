@@ -131,7 +131,10 @@ class Facts:
     def _by_same(self, element: Scalar) -> Iterator[tuple[Values, Reason]]:
         """Conditions on a rational multiple of the element."""
         for condition in self.conditions.apart:
-            multiple = self.field.constant(element / condition.comparison.element)
+            other = condition.comparison.element
+            if len(element.numer) != len(other.numer) or len(element.denom) != len(other.denom):
+                continue  # no division is needed to see that it is no multiple
+            multiple = self.field.constant(element / other)
             if multiple is not None:
                 values = product(condition.values, side(multiple))
                 scale = self.field.scalar(multiple)
