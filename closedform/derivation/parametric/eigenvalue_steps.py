@@ -144,19 +144,36 @@ def _quadratic(
         "name": name,
         "regimes": [
             {
-                "number": c.number + 1,
-                "sign": Statement("sign", (name, ZERO), _RELATIONS[c.regimes[place].kind]),
-                "cases": (c.number,),
-                "value": Statement(
-                    "eigenvalue", (symbol, next(values_of(field, c, c.modes[place])))
-                ),
+                "number": alike[0].number + 1,
+                "sign": Statement("sign", (name, ZERO), _RELATIONS[kind]),
+                "cases": tuple(c.number for c in alike),
+                "value": _shared_value(field, symbol, alike, place),
             }
-            for c in cases
+            for kind, alike in _by_kind(cases, place)
         ],
+        "weak": None,
     }
+    if argument.sign in _WEAK:
+        row["weak"] = Statement("sign", (name, ZERO), _WEAK[argument.sign])
     row["why"] = reason_of(field, argument) if argument.sign != "unknown" else []
     row["fully"] = reason_of(field, argument, deep=True) if argument.sign != "unknown" else []
     return row
+
+
+def _shared_value(
+    field: ParameterField, symbol: Side, cases: Sequence[Case], place: int
+) -> Statement | None:
+    """The pair as it is printed in cases, if it is printed alike in all of them."""
+    found = {next(values_of(field, c, c.modes[place])) for c in cases}
+    return Statement("eigenvalue", (symbol, found.pop())) if len(found) == 1 else None
+
+
+def _by_kind(cases: Sequence[Case], place: int) -> list[tuple[str, list[Case]]]:
+    """The cases by the kind of a factor's regime in them."""
+    found: dict[str, list[Case]] = {}
+    for case in cases:
+        found.setdefault(case.regimes[place].kind, []).append(case)
+    return list(found.items())
 
 
 def _over_one(field: ParameterField, element: Scalar) -> Expression:
@@ -181,6 +198,7 @@ def _has_quotient(formula: Expression) -> bool:
     return False
 
 
+_WEAK = {"nonnegative": ">=", "nonpositive": "<="}
 _RELATIONS = {"circular": "<", "double": "=", "hyperbolic": ">"}
 
 

@@ -77,8 +77,9 @@ def join_check(response: ParametricResponse, case: Case) -> Iterator[Check]:
         yield Check(
             _ITEM,
             "enclosed",
-            f"at {point}, with {moved} moved by 2^-{STEPS[0]}, 2^-{STEPS[1]}, 2^-{STEPS[2]} of "
-            f"itself, the formulas of case {neighbour.number + 1} differ in proportion",
+            f"at {point}, with {moved} moved by 2^-{STEPS[0]}, 2^-{STEPS[1]}, 2^-{STEPS[2]}"
+            f"{' of itself' if base[moved] else ''}, the formulas of case {neighbour.number + 1} "
+            "differ in proportion",
         )
 
 

@@ -22,8 +22,8 @@ GENERIC = [
     "d/dt e^(At) - A e^(At) = 0",
     "e^(A0) = I",
     "p(A) = 0",
-    "A P = P J",
-    "P e^(Jt) P^(-1) = e^(At)",
+    "eigenvectors and chains",
+    "two routes to the transition matrix",
     "det e^(At) = e^(tr(A) t)",
 ]
 
