@@ -91,9 +91,21 @@ def _root_of_quadratic(
     field = domain.field
     forms = [_over(domain, total, last, sign, field.domain.one)]
     d = field.of_polynomial(total.denom) if total else field.domain.one
-    if d != 1 and domain.sign_of(d).sign == "positive":
-        forms.append(_over(domain, total * d, last * d**2, sign, d))
+    if domain.sign_of(d).sign == "positive":
+        if d != 1:
+            forms.append(_over(domain, total * d, last * d**2, sign, d))
+        forms.append(_half_over(domain, total * d / field.scalar(2), last * d**2, sign, d))
     return min(forms, key=operations)
+
+
+def _half_over(
+    domain: ParameterDomain, half: Scalar, last: Scalar, sign: int, below: Scalar
+) -> Expression:
+    """(h ± sqrt(h^2 - P))/d, which is shorter where h has no fraction: (2 + sqrt(2))/q."""
+    field = domain.field
+    root = square_root_formula(domain, half**2 - last)
+    above = sum_of([rational_formula(field, half), root if sign > 0 else Negation(root)])
+    return above if below == 1 else Quotient(above, rational_formula(field, below))
 
 
 def _over(

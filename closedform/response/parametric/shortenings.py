@@ -65,6 +65,11 @@ def trade_shortenings(
         real = domain.sign_of(square).sign == "positive"
         if real and len(field.names_in(square)) > 1 and perfect_root(field, square) is None:
             yield Shortening(letters.take("omega_n", number), square, 2, "trade")
+    repeated = [m for m in modes if m.regime.kind == "single" and m.factor.index > 1]
+    if not damped and len(repeated) == 1:
+        rate = -repeated[0].factor.roots.centre
+        if len(field.names_in(rate)) > 1 and not _is_bare_product(rate):
+            yield Shortening(letters.take("delta"), rate, 1, "trade")
     single = [m.factor.roots.centre for m in modes if m.regime.kind == "single"]
     constants = [1 / -rate for rate in single if rate and rate.numer.is_ground]
     constants = [c for c in constants if len(field.names_in(c)) > 1]
