@@ -59,9 +59,8 @@ def cover_check(response: ParametricResponse) -> Check:
         if fault is not None:
             return Check(item, "refuted", fault)
     split = (
-        "on every branch no denominator or discriminant vanishes, and its formulas hold, or one "
-        "does, and that is excluded by the domain or is a branch of its own; each way in which "
-        "the signs that tell its cases apart may combine has one case"
+        "on every branch its formulas hold, or a denominator or discriminant vanishes, which is "
+        "excluded or is a branch of its own; each combination of signs has one case"
     )
     if open_ones:
         split += f", but for {open_ones} listed as not covered"

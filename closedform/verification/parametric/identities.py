@@ -69,7 +69,7 @@ def branch_checks(response: ParametricResponse, branch: Branch) -> tuple[Check, 
         *shared,
         characteristic_polynomial_check(solved),
         _over_parameters(chain_check(solved), "eigenvectors and chains"),
-        _over_parameters(routes_check(solved), "two routes to the transition matrix"),
+        _over_parameters(routes_check(solved), "two routes to it"),
         determinant_check(solved),
     )
 

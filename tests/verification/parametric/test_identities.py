@@ -23,7 +23,7 @@ GENERIC = [
     "e^(A0) = I",
     "p(A) = 0",
     "eigenvectors and chains",
-    "two routes to the transition matrix",
+    "two routes to it",
     "det e^(At) = e^(tr(A) t)",
 ]
 
