@@ -113,3 +113,12 @@ class ParametricModel:
     times: tuple[SurdSum, ...] = ()
     time: str = "t"
     summary: str = ""
+
+    @property
+    def occurring(self) -> frozenset[str]:
+        """The parameters on which anything hangs: [substitute] may have cancelled others."""
+        elements = [e for row in self.matrix for e in row]
+        elements += [*self.initial, *(w for output in self.outputs for w in output.weights)]
+        elements += [definition.value for definition in self.abbreviations]
+        elements += [condition.comparison.element for condition in self.conditions]
+        return frozenset(name for e in elements for name in self.field.names_in(e))

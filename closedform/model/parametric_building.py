@@ -63,7 +63,12 @@ def parametric_model(
     values += [definition.value for definition in (*restated, *abbreviations)]
     domain, added = domain_of(field, requirements, values, source)
     parameters = tuple(p for p in declared if p.name in field.parameters)
-    reading = ValueReading(parameters, restated, (*requirements, *added), field, source)
+    elements = [entry.value for entry in entries]
+    elements += [definition.value for definition in abbreviations]
+    elements += [condition.comparison.element for condition in conditions]
+    needed = frozenset(name for element in elements for name in field.names_in(element))
+    stated = (*requirements, *added)
+    reading = ValueReading(parameters, restated, stated, field, source, needed)
     return ParametricModel(
         name=heading.name,
         title=heading.title,

@@ -37,7 +37,10 @@ __all__ = ["ValueReading"]
 class ValueReading:
     """What values of the parameters are read by, and held against.
 
-    `requirements` are the conditions of the model's domain; `restated` take no values.
+    `requirements` are the conditions of the model's domain; `restated` take no values.  The
+    parameters that are `needed` are those that are left in entries, conditions and
+    abbreviations: others, which [substitute] cancels, may go without a value, and are given
+    any one.
     """
 
     parameters: tuple[Parameter, ...]
@@ -45,6 +48,7 @@ class ValueReading:
     requirements: tuple[Requirement, ...]
     field: ParameterField
     source: Source
+    needed: frozenset[str]
 
     @cached_property
     def _own(self) -> dict[str, SurdSum]:
@@ -52,13 +56,23 @@ class ValueReading:
         return {p.name: p.value for p in self.parameters if p.value is not None}
 
     def own(self) -> ValueSet | None:
-        """Return the values that the parameters have of their own; None unless all have one.
+        """Return the values that the parameters have of their own; None unless none is missing.
 
         Raises:  ValueOutsideError, BrokenConditionError; those that are there are checked.
         """
         self._check(self._own, {name: f"parameters.{name}.value" for name in self._own}, "")
-        complete = len(self._own) == len(self.parameters)
-        return ValueSet("", tuple(self._own.items())) if complete else None
+        if not self.needed <= self._own.keys():
+            return None
+        values = {
+            name: self._own[name] if name in self._own else self._any(name)
+            for name in self.field.parameters
+        }
+        return ValueSet("", tuple(values.items()))
+
+    def _any(self, name: str) -> SurdSum:
+        """A value for a parameter on which nothing hangs, within its assumption."""
+        negative = any(p.name == name and p.assume == "negative" for p in self.parameters)
+        return SurdSum.rational(-1 if negative else 1)
 
     def rows(self, value: object) -> tuple[ValueSet, ...]:
         """Return the rows of [[values]]; what a row leaves out takes the parameter's own value.
@@ -81,10 +95,10 @@ class ValueReading:
         keys = {name: f"{key}.{name}" for name in names if name in table}
         given = {name: number_from(table[name], keys[name], self.source) for name in keys}
         both = {**self._own, **given}
-        missing = tuple(name for name in names if name not in both)
+        missing = tuple(name for name in names if name in self.needed and name not in both)
         if missing:
             raise MissingValueError(self.source.at_name(key), missing)
-        values = {name: both[name] for name in names}
+        values = {name: both[name] if name in both else self._any(name) for name in names}
         self._check(values, keys, key)
         label = text_of(table.get("label", ""), f"{key}.label", self.source)
         return ValueSet(label or str(number), tuple(values.items()))

@@ -2,13 +2,17 @@
 
 from __future__ import annotations
 
+from fractions import Fraction
 from pathlib import Path
 
 import pytest
 
+from closedform.algebra.surds import SurdSum
 from closedform.errors import InputError
 from closedform.model import errors, load
 from closedform.model import parameter_errors as wrong
+from closedform.model.building import system
+from closedform.model.parametric import ParametricModel
 from closedform.notation import errors as formula_errors
 from closedform.notation import parametric_errors
 from tests.model.oscillator import spoiled
@@ -307,3 +311,17 @@ def test_values_may_be_rows_of_an_array(tmp_path: Path) -> None:
         wrong.ValueOutsideError, match=r"values\[2\]\.k, line 6, column 19: the val"
     ):
         load(written(tmp_path, text))
+
+
+def test_a_parameter_that_substitution_cancels_needs_no_value() -> None:
+    model = system(
+        [[0, 1], ["-k/m", "-c/m"]],
+        initial=[1, 0],
+        parameters={"m": "positive", "omega_n": "positive", "zeta": "positive"},
+        substitute={"k": "m*omega_n^2", "c": "2*zeta*omega_n*m"},
+        values=[{"omega_n": 10, "zeta": "1/5"}],
+    )
+    assert isinstance(model, ParametricModel)
+    (row,) = model.value_sets
+    assert dict(row.values)["zeta"] == SurdSum.rational(Fraction(1, 5))
+    assert model.occurring == {"omega_n", "zeta"}

@@ -65,7 +65,7 @@ def _set(
         "given": [
             Statement("given value", (Name(name), _value_formula(value)))
             for (name, value), (_, before) in zip(numbers.values, first.values, strict=True)
-            if numbers is first or value != before
+            if name in model.occurring and (numbers is first or value != before)
         ],
         "quantities": [
             {"name": Name(q.name), "decimal": q.decimal, "exact": q.exact is not None}
