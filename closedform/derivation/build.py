@@ -6,7 +6,6 @@ from collections.abc import Iterator
 
 from closedform.derivation.abbreviations import abbreviations_step
 from closedform.derivation.canonical_steps import canonical_steps
-from closedform.derivation.proof.evaluation import names_in
 from closedform.derivation.proof.statements import prove_statements
 from closedform.derivation.resolvent_steps import resolvent_steps
 from closedform.derivation.result_steps import (
@@ -24,7 +23,7 @@ from closedform.derivation.spectrum_steps import (
     named_roots_steps,
 )
 from closedform.derivation.step import Derivation, Step
-from closedform.notation.expression import Expression, is_expression
+from closedform.notation.expression import Expression, is_expression, names_in
 from closedform.response.response import Response
 from closedform.verification.record import VerificationRecord
 

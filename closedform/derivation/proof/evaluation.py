@@ -25,7 +25,7 @@ from closedform.notation.expression import (
     Sum,
 )
 
-__all__ = ["ball_at", "exact_at", "expressions_in", "matrix_at", "names_in", "unit"]
+__all__ = ["ball_at", "exact_at", "expressions_in", "matrix_at", "unit"]
 
 
 def ball_at(formula: Expression, names: Mapping[str, Any]) -> Any:
@@ -133,22 +133,3 @@ def expressions_in(side: Side) -> Iterator[Expression]:
             yield from expressions_in(part)
     else:
         yield side
-
-
-def names_in(formula: Expression) -> frozenset[str]:
-    """Return every name that a formula uses."""
-    found: set[str] = set()
-    pending: list[Any] = [formula]
-    while pending:
-        match pending.pop():
-            case Name(text):
-                found.add(text)
-            case Negation(operand):
-                pending.append(operand)
-            case Sum(parts) | Product(parts):
-                pending += parts
-            case Quotient(one, other) | Power(one, other):
-                pending += (one, other)
-            case Call(_, argument):
-                pending.append(argument)
-    return frozenset(found)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from flint import acb, ctx
 
-from closedform.derivation.proof.evaluation import expressions_in, matrix_at, names_in
+from closedform.derivation.proof.evaluation import expressions_in, matrix_at
 from closedform.derivation.proof.finding import (
     Comparison,
     Fault,
@@ -12,6 +12,7 @@ from closedform.derivation.proof.finding import (
     agreeing,
 )
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix
+from closedform.notation.expression import names_in
 
 __all__ = ["require_equal"]
 

@@ -15,7 +15,7 @@ from collections.abc import Callable, Iterator, Sequence
 from flint import ctx
 
 from closedform.derivation.proof import forms, resolvent, results, spectrum
-from closedform.derivation.proof.evaluation import expressions_in, names_in
+from closedform.derivation.proof.evaluation import expressions_in
 from closedform.derivation.proof.finding import (
     Comparison,
     Fault,
@@ -25,7 +25,7 @@ from closedform.derivation.proof.finding import (
 )
 from closedform.derivation.proof.ground import Ground, letters_in, rows_of
 from closedform.derivation.step import IMAGINARY_UNIT, Statement, Step
-from closedform.notation.expression import Name
+from closedform.notation.expression import Name, names_in
 from closedform.response.response import Response
 from closedform.verification.enclosures import trial_times
 from closedform.verification.record import Check, UnprovedError
