@@ -116,7 +116,7 @@ def _quadratic(factor: Factor, domain: ParameterDomain) -> tuple[Regime, ...]:
 
 def _cubic(field: ParameterField, factor: Factor, domain: ParameterDomain) -> tuple[Regime, ...]:
     """Three real roots, or one; that one lies beyond the mean of all three where p(mean) < 0."""
-    middle = factor.p.eval(factor.roots.centre)
+    middle = factor.p.shift(factor.roots.centre).nth(0)
     found: list[Regime] = []
     for regime in _by_sign(
         discriminant_of(field, factor.p),

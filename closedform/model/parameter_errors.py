@@ -26,7 +26,7 @@ __all__ = [
 class NoParametersError(ModelError):
     """A model with parameters in which none is left open; `restated` says why."""
 
-    def __init__(self, place: Place, restated: bool) -> None:  # noqa: FBT001
+    def __init__(self, place: Place, restated: bool) -> None:  # noqa: FBT001  as pickled
         super().__init__(place, restated)
         self.restated = restated
 
@@ -78,7 +78,7 @@ class UnknownAssumptionError(ModelError):
 class UnusedParameterError(ModelError):
     """A parameter that stands nowhere in the model; `declared` is false for one only re-stated."""
 
-    def __init__(self, place: Place, name: str, declared: bool) -> None:  # noqa: FBT001
+    def __init__(self, place: Place, name: str, declared: bool) -> None:  # noqa: FBT001  as pickled
         super().__init__(place, name, declared)
         self.name, self.declared = name, declared
 
@@ -145,7 +145,7 @@ class SubstitutionCycleError(ModelError):
 class SettledConditionError(ModelError):
     """A comparison that is decided without the parameters: always true or never."""
 
-    def __init__(self, place: Place, found: str, holds: bool) -> None:  # noqa: FBT001
+    def __init__(self, place: Place, found: str, holds: bool) -> None:  # noqa: FBT001  as pickled
         super().__init__(place, found, holds)
         self.found, self.holds = found, holds
 

@@ -25,15 +25,24 @@ class Solved(Protocol):
     """A matrix with its spectrum, its chains and its exponential."""
 
     @property
-    def field(self) -> BaseField: ...  # noqa: D102
+    def field(self) -> BaseField:
+        """The field K of the entries."""
+
     @property
-    def matrix(self) -> FieldMatrix: ...  # noqa: D102
+    def matrix(self) -> FieldMatrix:
+        """The matrix A, n x n."""
+
     @property
-    def spectrum(self) -> Spectrum: ...  # noqa: D102
+    def spectrum(self) -> Spectrum:
+        """The factored characteristic polynomial of A."""
+
     @property
-    def jordan(self) -> JordanForm: ...  # noqa: D102
+    def jordan(self) -> JordanForm:
+        """Its chains, which span the space."""
+
     @property
-    def exponential(self) -> ExponentialMatrix: ...  # noqa: D102
+    def exponential(self) -> ExponentialMatrix:
+        """The functions e^(At)."""
 
 
 Vanishes = Callable[[Scalar], bool]

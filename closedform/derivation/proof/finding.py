@@ -110,7 +110,7 @@ def _radius(ball: acb) -> arb:
     return max(ball.real.rad(), ball.imag.rad())
 
 
-def whether(holds: bool, place: str, reason: str) -> Iterator[Finding]:  # noqa: FBT001
+def whether(holds: bool, place: str, reason: str) -> Iterator[Finding]:  # noqa: FBT001  it reads as a sentence
     """Yield a fault unless something holds."""
     if not holds:
         yield Fault(place, reason)

@@ -34,7 +34,7 @@ def eigenvector_facts(ground: Ground, step: Step) -> Iterator[Finding]:
         yield Fault("eigenvectors", f"no eigenvalue is numbered {numbers}")
         return
     place = f"eigenvectors of eigenvalue {eigenvalue.numbers[0]}"
-    printed = ball_at(formula_in(facts["eigenvalue"]), ground.names)  # type: ignore[arg-type]
+    printed = ball_at(formula_in(facts["eigenvalue"]), ground.names)
     yield Comparison(place, printed, ground.eigenvalues[eigenvalue.numbers[0]])
     yield from structure(ground, place, eigenvalue.factor, facts)
     yield from whether(

@@ -37,7 +37,7 @@ __all__ = [
 ]
 
 
-def formula_in(side: Side) -> Expression:
+def formula_in(side: object) -> Expression:
     """Return a side that has to be a formula.  Raises TypeError if it is none."""
     if not is_expression(side):
         raise TypeError(f"{side} is no formula")

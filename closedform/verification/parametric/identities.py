@@ -8,14 +8,15 @@ kept, zero means divisible by the relation.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 
 from closedform.algebra.branches import Branch
 from closedform.algebra.canonical import JordanForm, jordan_form
 from closedform.algebra.exponential import ExponentialMatrix
-from closedform.algebra.field import FieldMatrix
+from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parametric_spectrum import vanishes_under
 from closedform.algebra.spectrum import Spectrum
 from closedform.response.parametric.case import Case
 from closedform.response.parametric.response import ParametricResponse
@@ -47,7 +48,7 @@ def branch_checks(response: ParametricResponse, branch: Branch) -> tuple[Check, 
     """Return what is proved of e^(At) on a branch, by arithmetic in Q(parameters)."""
     field, a = response.model.field, branch.matrix
 
-    def vanishes(element: object) -> bool:
+    def vanishes(element: Scalar) -> bool:
         return vanishes_on(branch, element)
 
     shared = (
@@ -69,7 +70,7 @@ def branch_checks(response: ParametricResponse, branch: Branch) -> tuple[Check, 
         *shared,
         characteristic_polynomial_check(solved),
         _over_parameters(chain_check(solved), "eigenvectors and chains"),
-        _over_parameters(routes_check(solved), "two routes to it"),
+        _over_parameters(routes_check(solved), "two routes"),
         determinant_check(solved),
     )
 
@@ -90,7 +91,7 @@ def state_checks(response: ParametricResponse, case: Case) -> Iterator[Check]:
     """Yield what is proved of the solution of a case and of its outputs."""
     model, field, branch = response.model, response.model.field, case.branch
 
-    def vanishes(element: object) -> bool:
+    def vanishes(element: Scalar) -> bool:
         return vanishes_on(branch, element)
 
     initial = _stated(field, [[x] for x in model.initial], branch)
@@ -102,16 +103,14 @@ def state_checks(response: ParametricResponse, case: Case) -> Iterator[Check]:
         yield _same("y = C x", case.output, case.state.after(weights))
 
 
-def vanishes_on(branch: Branch, element: object) -> bool:
+def vanishes_on(branch: Branch, element: Scalar) -> bool:
     """Whether an element is zero, or zero wherever the relation of the branch holds."""
-    if not element or branch.relation is None:
-        return not element
-    return not element.numer.rem(branch.relation.numer)  # type: ignore[attr-defined]
+    return vanishes_under(element, branch.relation)
 
 
-def _stated(field: ParameterField, rows: object, branch: Branch) -> FieldMatrix:
+def _stated(field: ParameterField, rows: Sequence[Sequence[Scalar]], branch: Branch) -> FieldMatrix:
     """A matrix as the model states it, with the equations of the branch put in."""
-    given = [[field.substituted(e, branch.values) for e in row] for row in rows]  # type: ignore[attr-defined]
+    given = [[field.substituted(e, branch.values) for e in row] for row in rows]
     return field.matrix(given)
 
 

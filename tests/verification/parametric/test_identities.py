@@ -23,7 +23,7 @@ GENERIC = [
     "e^(A0) = I",
     "p(A) = 0",
     "eigenvectors and chains",
-    "two routes to it",
+    "two routes",
     "det e^(At) = e^(tr(A) t)",
 ]
 
