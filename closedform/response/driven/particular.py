@@ -1,0 +1,168 @@
+"""A particular response to waves: what the eigenvalues of the generator contribute.
+
+With e^(Mt) the exponential of the stacked matrix M = [[A, B R], [0, S]] and w a start of the
+generator, the terms of e^(Mt) (0, w) that belong to eigenvalues of S make a function (y, R w)
+with y' = A y + B u: each spectral component of e^(Mt) solves the stacked equation by itself.
+No eigenvalue has to differ from any other, so that resonance needs no rule of its own.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from math import factorial
+
+from closedform.algebra.exponential import ExponentialMatrix, ModalTerm
+from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
+from closedform.algebra.parametric_spectrum import vanishes_under
+from closedform.algebra.root_matrix import RootMatrix
+from closedform.algebra.waves import Constant, ConstantColumns, gathered_columns
+from closedform.model.driven.generator import Tone
+
+__all__ = ["Drive", "at_instant", "combined", "of_input", "shifted_polynomials", "without"]
+
+
+@dataclass(frozen=True)
+class Drive:
+    """The tones of the inputs over a field, perhaps where a relation of parameters holds."""
+
+    field: BaseField
+    tones: tuple[Tone, ...]
+    relation: Scalar | None = None
+
+    def tone_of(self, p: Polynomial) -> Tone | None:
+        """Return the tone whose roots are those of an irreducible polynomial, if there is one."""
+        return next((tone for tone in self.tones if self._divides(p, tone)), None)
+
+    def _divides(self, p: Polynomial, tone: Tone) -> bool:
+        one = self.field.domain.one
+        factor = self.field.polynomial([one, -tone.rate])
+        if tone.frequency:
+            factor = factor**2 + self.field.polynomial([tone.frequency**2])
+        if p.degree() > factor.degree():
+            return False
+        return all(vanishes_under(c, self.relation) for c in factor.rem(p).to_list())
+
+
+def of_input(drive: Drive, function: ExponentialMatrix) -> ExponentialMatrix:
+    """Return the terms of a function that belong to eigenvalues of the generator."""
+    return _kept(function, [drive.tone_of(term.factor.p) is not None for term in function.terms])
+
+
+def without(function: ExponentialMatrix, other: ExponentialMatrix) -> ExponentialMatrix:
+    """Return function - other."""
+    return combined(((1, function), (-1, other)))
+
+
+def combined(parts: Iterable[tuple[int | Scalar, ExponentialMatrix]]) -> ExponentialMatrix:
+    """Return a sum of weighted functions of the same factors and shape (at least one)."""
+    weighted = [(weight, function) for weight, function in parts]
+    field, first = weighted[0][1].field, weighted[0][1]
+    terms = []
+    for place, term in enumerate(first.terms):
+        residues = []
+        for j in range(len(term.residues)):
+            total = None
+            for weight, function in weighted:
+                own = function.terms[place].residues[j]
+                scale = field.polynomial([field.domain.convert(weight)])
+                scaled = own if weight == 1 else own.scaled(scale)
+                total = scaled if total is None else total + scaled
+            if total is None:
+                raise ValueError("a sum of no functions has no shape")
+            residues.append(total)
+        terms.append(ModalTerm(term.factor, tuple(residues)))
+    return ExponentialMatrix(field, tuple(terms))
+
+
+def at_instant(drive: Drive, function: ExponentialMatrix, d: Scalar) -> ConstantColumns:
+    """Return the value at d of a column of functions of the generator's eigenvalues.
+
+    At a pair of roots a ± iw of p it is e^(ad) [R_1 cos(wd) + (R_0 + a R_1) sin(wd)/w],
+    with R = sum over j of R_j d^j/j! = R_0 + R_1 lambda; at one root e^(ad) R.
+    """
+    field = drive.field
+    zero = field.domain.zero
+    parts: list[tuple[Constant, FieldMatrix]] = []
+    for term in function.terms:
+        values = _polynomial_at(field, term, d)
+        if all(m.is_zero_matrix for m in values):
+            continue
+        tone = drive.tone_of(term.factor.p)
+        if tone is None:
+            raise ValueError("only terms of the generator have values at an instant")
+        growth = tone.rate * d
+        if term.factor.degree == 1:
+            parts.append((Constant(growth, "one", zero), values[0]))
+            continue
+        low, high = values
+        angle = tone.frequency * d
+        parts += _circular(field, growth, "cos", angle, high)
+        sine = (low + high * tone.rate) * (1 / tone.frequency)
+        parts += _circular(field, growth, "sin", angle, sine)
+    return gathered_columns(parts)
+
+
+def shifted_polynomials(function: ExponentialMatrix, d: Scalar) -> ExponentialMatrix:
+    """Return F(t + d) of a function whose terms all belong to the eigenvalue 0."""
+    field = function.field
+    terms = []
+    for term in function.terms:
+        size = len(term.residues)
+        residues = []
+        for j in range(size):
+            total = term.residues[j]
+            for i in range(1, size - j):
+                weight = d**i / field.domain.convert(factorial(i))
+                total = total + term.residues[j + i].scaled(field.polynomial([weight]))
+            residues.append(total)
+        terms.append(ModalTerm(term.factor, tuple(residues)))
+    return ExponentialMatrix(field, tuple(terms))
+
+
+def _circular(
+    field: BaseField, growth: Scalar, kernel: str, angle: Scalar, column: FieldMatrix
+) -> list[tuple[Constant, FieldMatrix]]:
+    """A column times e^growth cos(angle) or sin(angle), exact where the angle is 0 or k pi/2."""
+    zero = field.domain.zero
+    quarters = _quarter_turns(field, angle)
+    if quarters is not None:
+        turn = quarters % 4
+        weight = ((1, 0, -1, 0) if kernel == "cos" else (0, 1, 0, -1))[turn]
+        return [(Constant(growth, "one", zero), column * field.domain.convert(weight))]
+    if kernel == "cos":
+        return [(Constant(growth, "cos", angle), column)]
+    return [(Constant(growth, "sin", angle), column)]
+
+
+def _quarter_turns(field: BaseField, angle: Scalar) -> int | None:
+    """The number of right angles in an angle, if it is whole: pi is a name of the field's."""
+    if not angle:
+        return 0
+    names: Sequence[str] = getattr(field, "parameters", ())
+    if "pi" not in names:
+        return None
+    quarter = field.symbol("pi") / 2  # type: ignore[attr-defined]
+    turns = field.constant(angle / quarter)  # type: ignore[attr-defined]
+    return None if turns is None or turns.denominator != 1 else int(turns)
+
+
+def _polynomial_at(field: BaseField, term: ModalTerm, d: Scalar) -> list[FieldMatrix]:
+    total: RootMatrix = term.residues[0]
+    for j, residue in enumerate(term.residues[1:], start=1):
+        weight = d**j / field.domain.convert(factorial(j))
+        total = total + residue.scaled(field.polynomial([weight]))
+    return list(total.coefficients)
+
+
+def _kept(function: ExponentialMatrix, keep: Sequence[bool]) -> ExponentialMatrix:
+    """The function with the terms that are not kept made zero: the factors stay in place."""
+    zero = function.field.domain.zero
+    gone = function.field.polynomial([zero])
+    return ExponentialMatrix(
+        function.field,
+        tuple(
+            term if kept else ModalTerm(term.factor, tuple(r.scaled(gone) for r in term.residues))
+            for term, kept in zip(function.terms, keep, strict=True)
+        ),
+    )
