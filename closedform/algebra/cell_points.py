@@ -6,7 +6,6 @@ import random
 from collections.abc import Iterator, Mapping, Sequence
 from fractions import Fraction
 
-from closedform.algebra.conditions import side
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.sign_argument import Comparison, relation_values
@@ -20,8 +19,11 @@ WIDTHS = (6, 9, 20, 40, 100, 3000)
 
 
 def only_name(field: ParameterField, comparison: Comparison) -> frozenset[str]:
-    """Return the parameter of a comparison in one alone, in a set; the empty set for others."""
-    names = field.names_in(comparison.element)
+    """Return the parameter of a comparison in one alone, in a set; the empty set for others.
+
+    One with the number pi in it is none in one parameter alone.
+    """
+    names = field.symbols_in(comparison.element)
     return names if len(names) == 1 else frozenset()
 
 
@@ -36,7 +38,7 @@ def points_in_cells(
     `solved` are parameters with their values by the others, each by those that are not solved
     before it.  Conditions in which several of the others are left may not hold.
     """
-    free = [n for n in field.parameters if n not in solved]
+    free = [n for n in field.free if n not in solved]
     turned = _turned(field, conditions, solved)
     if turned is None:
         return
@@ -85,11 +87,11 @@ def _cells_left(
         return ()
     asked = []
     for comparison in turned:
-        value = field.constant(comparison.element)
-        if value is None:
-            asked.append(comparison)
-        elif not side(value) <= relation_values(comparison.relation):
+        sign = field.number_sign(comparison.element)
+        if sign is not None and sign not in relation_values(comparison.relation):
             return ()
+        if only_name(field, comparison):
+            asked.append(comparison)
     return admissible_cells(field, asked)
 
 

@@ -8,7 +8,7 @@ from fractions import Fraction
 from functools import cached_property, reduce
 
 from closedform.algebra.field import Scalar, rational
-from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
+from closedform.algebra.parameter_field import PI, ParameterField, ParameterPolynomial
 from closedform.algebra.sign_argument import (
     ANY,
     Comparison,
@@ -25,7 +25,7 @@ __all__ = ["Bound", "Condition", "Conditions", "cleared", "side"]
 
 @dataclass(frozen=True)
 class Condition:
-    """A comparison whose element is no number, and that taken apart."""
+    """A comparison whose element holds parameters, and that taken apart."""
 
     comparison: Comparison
     content: Fraction
@@ -64,10 +64,10 @@ class Conditions:
 
     @cached_property
     def apart(self) -> tuple[Condition, ...]:
-        """The comparisons whose elements are no numbers."""
+        """The comparisons whose elements hold parameters."""
         made = []
         for comparison in self.comparisons:
-            if self.field.constant(comparison.element) is None:
+            if self.field.number_sign(comparison.element) is None:
                 parts = self.field.factored(comparison.element)
                 made.append(Condition(comparison, parts.content, dict(parts.factors)))
         return tuple(made)
@@ -76,7 +76,7 @@ class Conditions:
     def parameters(self) -> tuple[Values, ...]:
         """The signs of the parameters, in the order of the field, by conditions and bounds."""
         gens = self.field.domain.field.ring.gens
-        found = [self._stated(x) for x in gens]
+        found = [self._stated(x) if str(x) != PI else side(Fraction(1)) for x in gens]
         bounds = _bounds([c.comparison for c in self.apart])
         changed = True
         while changed:
@@ -117,7 +117,7 @@ class Conditions:
             same = self.field.constant(core / condition.comparison.element)
             if same is not None:
                 made.append(condition.comparison)
-            elif self.field.constant(core) is None:
+            elif self.field.number_sign(core) is None:
                 made.append(Comparison(core * sign, condition.comparison.relation))
         return tuple(c for c in made if len(c.element.numer) > 1 and c.relation != "!=")
 
@@ -143,7 +143,7 @@ def _bounds(comparisons: Iterable[Comparison]) -> tuple[Bound, ...]:
             continue
         polynomial = cleared(comparison.element)
         for place, x in enumerate(polynomial.ring.gens):
-            if polynomial.degree(x) == 1 and len(polynomial) > 1:
+            if str(x) != PI and polynomial.degree(x) == 1 and len(polynomial) > 1:
                 free, slope = coefficients_in(polynomial, place)
                 if slope.is_ground:
                     number = slope.LC

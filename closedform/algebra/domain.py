@@ -9,13 +9,12 @@ it is never a guess.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from fractions import Fraction
 from functools import cached_property
 
 from closedform.algebra.conditions import Conditions
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
-from closedform.algebra.sample import sample_points
+from closedform.algebra.sample import PointValue, sample_points
 from closedform.algebra.sign_argument import (
     Comparison,
     Relation,
@@ -111,10 +110,11 @@ class ParameterDomain:
         ]
         return ParameterDomain(self.field, ()).narrowed(*put)
 
-    def sample(self, count: int, seed: int) -> list[dict[str, Fraction]]:
+    def sample(self, count: int, seed: int) -> list[dict[str, PointValue]]:
         """Return up to `count` points of the domain, rational and short; the same each time.
 
-        Every parameter has a value.  Fewer points, or none, are returned where a bounded
+        Every parameter has a value; one that an equation gives may have the number pi in it.
+        Fewer points, or none, are returned where a bounded
         search finds no more: this does not say that the domain is empty.
         """
         return sample_points(self.field, self.conditions, count, seed)

@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 
 from closedform.algebra.domain import Comparison, ParameterDomain, SignArgument
 from closedform.algebra.field import Scalar
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.algebra.sign_argument import BySquares, ByTerms, Combined
 
 __all__ = ["Equation", "Start", "imposed", "linear_solution"]
@@ -116,14 +116,19 @@ def _equation(field: ParameterField, polynomial: Scalar, domain: ParameterDomain
         if solution is None:
             continue
         slope = field.derivative(polynomial, name)
-        plain = field.constant(slope) is not None
+        plain = field.number_sign(slope) is not None
         if plain or domain.sign_of(slope).never_zero:
             choices.append((not plain, Equation(polynomial, name, solution)))
     return min(choices, key=lambda c: c[0])[1] if choices else Equation(polynomial)
 
 
 def linear_solution(field: ParameterField, element: Scalar, name: str) -> Scalar | None:
-    """Return the value of a parameter at which an element vanishes, if it is linear in it."""
+    """Return the value of a parameter at which an element vanishes, if it is linear in it.
+
+    Pi is no parameter: nothing is solved for it.
+    """
+    if name == PI:
+        return None
     polynomial = field.of_polynomial(element.numer)
     slope = field.derivative(polynomial, name)
     if not slope or name in field.names_in(slope):

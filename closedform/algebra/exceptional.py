@@ -56,13 +56,13 @@ def exceptional_elements(
     They are the irreducible factors of the denominators in the coefficients; of the
     discriminant of every factor with roots of their own name (for which p'(lambda) divides),
     unless its structure says where roots meet; and of the constant term of a factor whose
-    frequencies divide.  Each comes once.
+    frequencies divide.  Each comes once; polynomials in pi alone never vanish, and are left out.
     """
     seen: set[Scalar] = set()
     for element in _denominators(field, exponential, structures):
         for polynomial, _ in field.factored(element).factors:
             made = field.of_polynomial(polynomial)
-            if made not in seen:
+            if made not in seen and field.number_sign(made) is None:
                 seen.add(made)
                 yield (made,)
     yield from _meeting_pairs(field, exponential, domain)

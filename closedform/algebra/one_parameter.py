@@ -6,12 +6,13 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from functools import cached_property
 
-from closedform.algebra.conditions import Conditions, side
+from closedform.algebra.conditions import Conditions
 from closedform.algebra.field import Scalar
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.algebra.sign_argument import (
     RELATIONS,
     ByExpansion,
+    ByPi,
     Comparison,
     Constant,
     Reason,
@@ -47,16 +48,19 @@ class InOneParameter:
         return self.conditions.field
 
     def signs(self, element: Scalar) -> Iterator[tuple[Values, Reason]]:
-        """Yield the signs of an element that is no number, as far as one parameter tells them."""
-        names = self._field.names_in(element)
+        """Yield the signs of an element that is no number, as far as one parameter tells them.
+
+        Elements with the number pi in them are none in one parameter alone.
+        """
+        names = self._field.symbols_in(element)
         if len(names) == 1:
             (name,) = names
             found = sign_by_cells(self._field, name, element, self.about(name))
             if found is not None:
                 yield found
         for solved in self.solved:
-            for name in self._field.parameters:
-                if name != solved.name and self._leaves(solved, element, name):
+            for name in self._beside(solved):
+                if self._leaves(solved, element, name):
                     yield from self._signs_after(solved, element, name)
 
     def _signs_after(
@@ -65,12 +69,13 @@ class InOneParameter:
         put = self._put(solved, element)
         if put is None:
             return
-        constant = self._field.constant(put)
-        if constant is not None:
-            argument = SignArgument(put, named(side(constant)), Constant())
+        sign = self._field.number_sign(put)
+        if sign is not None:
+            reason = ByPi() if self._field.holds_pi(put) else Constant()
+            argument = SignArgument(put, named(frozenset({sign})), reason)
         else:
             turned = [c for _, c in self._turned(solved, name)]
-            known = [c for c in turned if self._field.constant(c.element) is None]
+            known = [c for c in turned if self._field.number_sign(c.element) is None]
             facts = dict.fromkeys([*self.about(name), *known])
             found = sign_by_cells(self._field, name, put, tuple(facts))
             if found is None:
@@ -87,9 +92,11 @@ class InOneParameter:
         One of them may be an equation that turns the others into such; none of them can be
         left out.
         """
-        for name in self._field.parameters:
+        for name in self._field.free:
             alone = [(c, c) for c in self._stated(name)]
-            turned = [(s, self._turned(s, name)) for s in self.solved if s.name != name]
+            turned = [
+                (s, self._turned(s, name)) for s in self.solved if name in self._beside(s)
+            ]
             for solved, pairs in ((None, alone), *turned):
                 wrong = self._wrong([c for _, c in pairs])
                 if wrong is not None:
@@ -99,14 +106,18 @@ class InOneParameter:
                     return tuple(c for c in asked if c in wanted)
         return None
 
+    def _beside(self, solved: Solved) -> tuple[str, ...]:
+        """The other parameters; where there are none, what is left is a number."""
+        return tuple(n for n in self._field.free if n != solved.name) or (solved.name,)
+
     def _wrong(self, comparisons: list[Comparison]) -> tuple[int, ...] | None:
         """The places of comparisons that hold nowhere together; some may be of numbers."""
         places = []
         for place, comparison in enumerate(comparisons):
-            value = self._field.constant(comparison.element)
-            if value is None:
+            sign = self._field.number_sign(comparison.element)
+            if sign is None:
                 places.append(place)
-            elif not side(value) <= relation_values(comparison.relation):
+            elif sign not in relation_values(comparison.relation):
                 return (place,)
         wrong = needed_for_none(self._field, [comparisons[k] for k in places])
         return None if wrong is None else tuple(places[k] for k in wrong)
@@ -115,17 +126,17 @@ class InOneParameter:
         """Return what the conditions say about one parameter alone, the plain things first."""
         made = [*self._stated(name), *self.conditions.cores]
         for condition in self.conditions.apart:
-            if self._field.names_in(condition.comparison.element) != {name}:
+            if self._field.symbols_in(condition.comparison.element) != {name}:
                 for factor, exponent in condition.exponents.items():
                     if exponent < 0 or 0 not in condition.values:
                         made.append(Comparison(self._field.of_polynomial(factor), "!="))
         values = self.conditions.parameters[self._field.parameters.index(name)]
         made += _compared(self._field.symbol(name), values)
-        return tuple(dict.fromkeys(c for c in made if self._field.names_in(c.element) == {name}))
+        return tuple(dict.fromkeys(c for c in made if self._field.symbols_in(c.element) == {name}))
 
     def _stated(self, name: str) -> list[Comparison]:
         stated = [c.comparison for c in self.conditions.apart]
-        return [c for c in stated if self._field.names_in(c.element) == {name}]
+        return [c for c in stated if self._field.symbols_in(c.element) == {name}]
 
     @cached_property
     def solved(self) -> tuple[Solved, ...]:
@@ -139,10 +150,10 @@ class InOneParameter:
             (factor,) = open_ones
             names = self._field.names_in(self._field.of_polynomial(factor))
             for place, name in enumerate(self._field.parameters):
-                if factor.degree(factor.ring.gens[place]) == 1:
+                if name != PI and factor.degree(factor.ring.gens[place]) == 1:
                     free, slope = map(self._field.of_polynomial, coefficients_in(factor, place))
                     # In two parameters both hold one, and have no zero in it in common.
-                    if len(names) <= 2 or self._field.constant(slope) is not None:
+                    if len(names) <= 2 or self._field.number_sign(slope) is not None:
                         found.append(Solved(condition.comparison, name, -free / slope))
         return tuple(found)
 
@@ -160,11 +171,11 @@ class InOneParameter:
         return made
 
     def _leaves(self, solved: Solved, element: Scalar, name: str) -> bool:
-        """Whether an element with the value put in holds `name` at most."""
-        names = self._field.names_in(element)
+        """Whether an element with the value put in is a number, or holds `name` alone."""
+        names = self._field.symbols_in(element)
         if solved.name in names:
-            names = (names - {solved.name}) | self._field.names_in(solved.value)
-        return names <= {name}
+            names = (names - {solved.name}) | self._field.symbols_in(solved.value)
+        return names <= {name} or names == {PI}
 
     def _put(self, solved: Solved, element: Scalar) -> Scalar | None:
         """The element with the value put in, or None where it is defined nowhere then."""

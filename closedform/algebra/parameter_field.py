@@ -3,26 +3,35 @@
 Elements are SymPy's `FracElement`s: a numerator and a denominator without common factor.
 Equality is equality of functions; where a function is defined and which sign it has is
 asked in ``closedform.algebra.domain``.
+
+The name `PI` is no parameter but a number.  It is transcendental (F. Lindemann, Ueber die
+Zahl pi, 1882): a polynomial in it with algebraic coefficients, not all of them 0, is not 0.
+So the field is computed with as any other, and the sign of an element in pi alone is told by
+ball arithmetic.
 """
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import cached_property, lru_cache, reduce
 from operator import mul
 from typing import Any
 
-from flint import arb, fmpq
+from flint import arb, ctx, fmpq
 from sympy import Symbol
 from sympy.polys.domains import QQ
 
+from closedform.algebra.enclosure import ball_of
 from closedform.algebra.field import BaseField, Scalar, rational
 from closedform.algebra.polynomial_factors import PolynomialTerms, irreducible_factors
 from closedform.algebra.surds import SurdSum
 
-__all__ = ["Factored", "ParameterField", "ParameterPolynomial"]
+__all__ = ["PI", "Factored", "ParameterField", "ParameterPolynomial"]
+
+PI = "pi"
+"""The name of the number 3.14159…, which no parameter may have."""
 
 ParameterPolynomial = Any
 """A polynomial in the parameters with rational coefficients (SymPy's PolyElement)."""
@@ -43,9 +52,17 @@ class Factored:
 
 @dataclass(frozen=True)
 class ParameterField(BaseField):
-    """Q(parameters); the parameters are given by their names, in the order of printing."""
+    """Q(parameters); the parameters are given by their names, in the order of printing.
+
+    The number `PI` may be among them; `free` are the others.
+    """
 
     parameters: tuple[str, ...] = ()
+
+    @cached_property
+    def free(self) -> tuple[str, ...]:
+        """The names that stand for parameters."""
+        return tuple(name for name in self.parameters if name != PI)
 
     @cached_property
     def domain(self) -> Any:
@@ -78,7 +95,7 @@ class ParameterField(BaseField):
         return rational(element.numer.LC) / rational(element.denom.LC)
 
     def surds(self, element: Scalar) -> SurdSum:
-        """Return an element without parameters as a number.  Raises ValueError for others."""
+        """Return a rational element as a number.  Raises ValueError for others."""
         value = self.constant(element)
         if value is None:
             raise ValueError(f"{element} is no number")
@@ -86,11 +103,36 @@ class ParameterField(BaseField):
 
     def sign(self, element: Scalar) -> int:
         """Return the sign of an element without parameters.  Raises ValueError for others."""
-        value = self.surds(element).as_fraction()
-        return (value > 0) - (value < 0)
+        found = self.number_sign(element)
+        if found is None:
+            raise ValueError(f"{element} is no number")
+        return found
+
+    def number_sign(self, element: Scalar) -> int | None:
+        """Return the sign of a number: a rational one, or one in pi alone; None for others."""
+        value = self.constant(element)
+        if value is not None:
+            return (value > 0) - (value < 0)
+        return None if self.names_in(element) else self.sign_at(element, {})
+
+    def sign_at(self, element: Scalar, values: Mapping[str, SurdSum]) -> int | None:
+        """Return the sign at values of the parameters, None where the element is not defined.
+
+        A polynomial in pi that is not zero has a sign, and balls narrow enough tell it.
+        """
+        above, below = (self._in_pi(q, values) for q in (element.numer, element.denom))
+        return _sign_in_pi(above) * _sign_in_pi(below) if below else None
+
+    def holds_pi(self, element: Scalar) -> bool:
+        """Whether an element has the number pi in it."""
+        return PI in self.symbols_in(element)
 
     def names_in(self, element: Scalar) -> frozenset[str]:
-        """Return the parameters that occur in an element."""
+        """Return the parameters that occur in an element; pi is none."""
+        return self.symbols_in(element) - {PI}
+
+    def symbols_in(self, element: Scalar) -> frozenset[str]:
+        """Return the names that occur in an element: parameters, and pi."""
         found = set()
         for polynomial in (element.numer, element.denom):
             for monomial in polynomial.itermonoms():
@@ -146,7 +188,10 @@ class ParameterField(BaseField):
         return element.diff(self._gens[name])
 
     def enclose_at(self, element: Scalar, values: Mapping[str, arb]) -> arb:
-        """Return a ball for the element at values of its parameters; not finite at a pole."""
+        """Return a ball for the element at values of its parameters; not finite at a pole.
+
+        Pi needs no value.
+        """
         below = self._enclosed(element.denom, values)
         return self._enclosed(element.numer, values) / below
 
@@ -156,25 +201,52 @@ class ParameterField(BaseField):
             value = rational(coefficient)
             term = arb(fmpq(value.numerator, value.denominator))
             for name, exponent in zip(self.parameters, monomial, strict=True):
+                base = (arb.pi() if name == PI else values[name]) if exponent else None
                 for _ in range(exponent):  # a power of a ball around 0 is not finite in FLINT
-                    term *= values[name]
+                    term *= base
             total += term
         return total
 
     def exact_at(self, element: Scalar, values: Mapping[str, SurdSum]) -> SurdSum:
-        """Return the exact value at values of the parameters.  Raises ZeroDivisionError."""
-        below = self._exact(element.denom, values)
-        return self._exact(element.numer, values) / below
+        """Return the exact value at values of the parameters, a number without pi.
 
-    def _exact(self, polynomial: ParameterPolynomial, values: Mapping[str, SurdSum]) -> SurdSum:
-        total = SurdSum(())
+        Raises ZeroDivisionError at a pole; ValueError where pi is left, see `number_at`.
+        """
+        value = self.number_at(element, values)
+        if value is None:
+            raise ValueError(f"{element} has the number pi in it")
+        return value
+
+    def number_at(self, element: Scalar, values: Mapping[str, SurdSum]) -> SurdSum | None:
+        """Return the exact value at values of the parameters, or None if it has pi in it.
+
+        Raises ZeroDivisionError at a pole.
+        """
+        above, below = (self._in_pi(q, values) for q in (element.numer, element.denom))
+        if not below:
+            raise ZeroDivisionError(str(element))
+        lead = above[-1] / below[-1] if above else SurdSum(())
+        shift = len(above) - len(below)
+        same = not above or (
+            shift == 0 and all(a == lead * b for a, b in zip(above, below, strict=True))
+        )
+        return lead if same else None
+
+    def _in_pi(
+        self, polynomial: ParameterPolynomial, values: Mapping[str, SurdSum]
+    ) -> list[SurdSum]:
+        """The coefficients of the powers of pi at values, lowest first, the last one not 0."""
+        found: dict[int, SurdSum] = {}
         for monomial, coefficient in polynomial.iterterms():
-            term = SurdSum.rational(rational(coefficient))
+            term, power = SurdSum.rational(rational(coefficient)), 0
             for name, exponent in zip(self.parameters, monomial, strict=True):
-                if exponent:
+                if name == PI:
+                    power = exponent
+                elif exponent:
                     term = term * values[name].power(exponent)
-            total = total + term
-        return total
+            found[power] = found.get(power, SurdSum(())) + term
+        powers = [power for power, value in found.items() if value.terms]
+        return [found.get(k, SurdSum(())) for k in range(max(powers, default=-1) + 1)]
 
     def rational_parts(self, element: Scalar) -> list[tuple[int, int, int]]:
         """Return (numerator, denominator, radicand) for every coefficient of an element."""
@@ -182,6 +254,20 @@ class ParameterField(BaseField):
             return []
         terms = [*element.numer.coeffs(), *(element.denom.coeffs() if element.denom != 1 else ())]
         return [(int(c.numerator), int(c.denominator), 1) for c in terms]
+
+
+def _sign_in_pi(coefficients: Sequence[SurdSum]) -> int:
+    """The sign of a polynomial in pi, lowest power first; 0 only for no coefficients."""
+    bits = 64
+    while coefficients:
+        with ctx.workprec(bits):
+            total = arb(0)
+            for coefficient in reversed(coefficients):
+                total = total * arb.pi() + ball_of(coefficient)
+            if not total.contains(0):
+                return 1 if total > 0 else -1
+        bits *= 2
+    return 0
 
 
 @lru_cache(maxsize=16384)

@@ -1,4 +1,7 @@
-"""Points of a domain: rational values of the parameters at which every condition holds."""
+"""Points of a domain: values of the parameters at which every condition holds.
+
+They are rational, but for those that an equation with the number pi gives.
+"""
 
 from __future__ import annotations
 
@@ -9,11 +12,14 @@ from fractions import Fraction
 
 from closedform.algebra.cell_points import only_name, points_in_cells
 from closedform.algebra.field import Scalar, rational
-from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
+from closedform.algebra.parameter_field import PI, ParameterField, ParameterPolynomial
 from closedform.algebra.sign_argument import Comparison, relation_values
 from closedform.algebra.squares import coefficients_in
 
-__all__ = ["holds_at", "sample_points", "value_at"]
+__all__ = ["PointValue", "holds_at", "sample_points", "value_at"]
+
+PointValue = Fraction | Scalar
+"""A rational number, or an element of the field in pi alone."""
 
 FEW = 5
 """So many points at most are looked for in cells."""
@@ -34,8 +40,12 @@ def value_at(element: Scalar, point: Mapping[str, Fraction]) -> Fraction | None:
     return _quotient(_terms(element.numer), _terms(element.denom), point)
 
 
-def holds_at(comparison: Comparison, point: Mapping[str, Fraction]) -> bool:
+def holds_at(comparison: Comparison, point: Mapping[str, PointValue]) -> bool:
     """Return whether a comparison is defined and holds at a point."""
+    names = tuple(map(str, comparison.element.field.symbols))
+    if PI in names:
+        field = ParameterField(parameters=names)
+        return _holds_over_pi(field, comparison, _as_elements(field, point))
     return _holds(value_at(comparison.element, point), comparison)
 
 
@@ -43,6 +53,20 @@ def _holds(value: Fraction | None, comparison: Comparison) -> bool:
     if value is None:
         return False
     return (value > 0) - (value < 0) in relation_values(comparison.relation)
+
+
+def _as_elements(field: ParameterField, point: Mapping[str, PointValue]) -> dict[str, Scalar]:
+    return {n: field.scalar(v) if isinstance(v, Fraction) else v for n, v in point.items()}
+
+
+def _holds_over_pi(
+    field: ParameterField, comparison: Comparison, point: Mapping[str, Scalar]
+) -> bool:
+    try:
+        value = field.substituted(comparison.element, point)
+    except ZeroDivisionError:  # it is not defined there
+        return False
+    return field.sign(value) in relation_values(comparison.relation)
 
 
 def _terms(polynomial: ParameterPolynomial) -> Terms:
@@ -70,7 +94,7 @@ def _sum(terms: Terms, point: Mapping[str, Fraction]) -> Fraction:
 
 def sample_points(
     field: ParameterField, conditions: Sequence[Comparison], count: int, seed: int
-) -> list[dict[str, Fraction]]:
+) -> list[dict[str, PointValue]]:
     """Return up to `count` different points at which the conditions hold.
 
     Equations are solved for a parameter in which one of their factors is linear; the
@@ -78,11 +102,11 @@ def sample_points(
     few points, all parameters but one are drawn, and the last one is taken from what the
     conditions leave to it then.
     """
-    found: list[dict[str, Fraction]] = []
+    found: list[dict[str, PointValue]] = []
     solved = _solved(field, conditions)
     if solved is not None:
         drawn = _drawn_points(field, conditions, solved, TRIES * max(count, 10), seed)
-        _keep(_Asked.of(field, conditions, solved), drawn, count, found)
+        _keep(_asked(field, conditions, solved), drawn, count, found)
     few = min(count, FEW)
     if len(found) < few:
         alone = [c for c in conditions if c.relation == "=" and only_name(field, c)]
@@ -90,7 +114,7 @@ def sample_points(
         solved = _solved(field, [c for c in conditions if c not in alone], kept)
         if solved is not None:
             drawn = points_in_cells(field, conditions, solved, seed)
-            _keep(_Asked.of(field, conditions, solved), drawn, few, found)
+            _keep(_asked(field, conditions, solved), drawn, few, found)
     return found
 
 
@@ -113,7 +137,7 @@ class _Asked:
         asked = [(c, _terms(c.element.numer), _terms(c.element.denom)) for c in conditions]
         return cls(field.parameters, put, tuple(asked))
 
-    def completed(self, point: dict[str, Fraction]) -> dict[str, Fraction] | None:
+    def completed(self, point: dict[str, Fraction]) -> dict[str, PointValue] | None:
         """Return the point with all parameters, or None where a condition does not hold."""
         if not _completed(point, self.solved):
             return None
@@ -122,11 +146,45 @@ class _Asked:
         return None
 
 
+@dataclass(frozen=True)
+class _AskedOverPi:
+    """The same in a field with the number pi."""
+
+    field: ParameterField
+    solved: Mapping[str, Scalar]
+    conditions: Sequence[Comparison]
+
+    def completed(self, point: dict[str, Fraction]) -> dict[str, PointValue] | None:
+        """Return the point with all parameters, or None where a condition does not hold."""
+        field, whole = self.field, _as_elements(self.field, point)
+        for name, element in reversed(self.solved.items()):
+            try:
+                whole[name] = field.substituted(element, whole)
+            except ZeroDivisionError:  # it is not defined there
+                return None
+        if not all(_holds_over_pi(field, c, whole) for c in self.conditions):
+            return None
+        return {n: _plain(field, whole[n]) for n in field.free}
+
+
+def _plain(field: ParameterField, element: Scalar) -> PointValue:
+    value = field.constant(element)
+    return element if value is None else value
+
+
+def _asked(
+    field: ParameterField, conditions: Sequence[Comparison], solved: dict[str, Scalar]
+) -> _Asked | _AskedOverPi:
+    if PI in field.parameters:
+        return _AskedOverPi(field, solved, conditions)
+    return _Asked.of(field, conditions, solved)
+
+
 def _keep(
-    asked: _Asked,
+    asked: _Asked | _AskedOverPi,
     points: Iterable[dict[str, Fraction]],
     count: int,
-    found: list[dict[str, Fraction]],
+    found: list[dict[str, PointValue]],
 ) -> None:
     """Add points at which all conditions hold until there are `count` different ones."""
     if len(found) >= count:
@@ -148,7 +206,7 @@ def _drawn_points(
 ) -> Iterator[dict[str, Fraction]]:
     """Yield values of the parameters that are not solved."""
     signs = _drawn_signs(field, conditions)
-    free = [n for n in field.parameters if n not in solved]
+    free = [n for n in field.free if n not in solved]
     draw = random.Random(seed)  # noqa: S311  (points to look at, no secret)
     for attempt in range(tries):
         one = SCALES[attempt % len(SCALES)]
@@ -196,7 +254,7 @@ def _linear_root(
         if exponent < 0:
             continue
         for place, name in reversed(list(enumerate(field.parameters))):
-            if name not in kept and factor.degree(factor.ring.gens[place]) == 1:
+            if name != PI and name not in kept and factor.degree(factor.ring.gens[place]) == 1:
                 free, slope = map(field.of_polynomial, coefficients_in(factor, place))
                 return name, -free / slope
     return None
@@ -205,12 +263,12 @@ def _linear_root(
 def _drawn_signs(field: ParameterField, conditions: Sequence[Comparison]) -> dict[str, int]:
     """The sign of each parameter that a condition on it alone fixes."""
     signs = {}
-    for name in field.parameters:
+    for name in field.free:
         x = field.symbol(name)
         for condition in conditions:
-            multiple = field.constant(condition.element / x)
+            multiple = field.number_sign(condition.element / x)
             if multiple and condition.relation in {">", ">="}:
-                signs[name] = 1 if multiple > 0 else -1
+                signs[name] = multiple
     return signs
 
 

@@ -20,6 +20,7 @@ __all__ = [
     "ByCondition",
     "ByExpansion",
     "ByFactors",
+    "ByPi",
     "BySquares",
     "ByTerms",
     "Combined",
@@ -85,6 +86,11 @@ class Square:
 @dataclass(frozen=True)
 class Constant:
     """The element is a rational number."""
+
+
+@dataclass(frozen=True)
+class ByPi:
+    """The element is a number in pi alone, not 0 as pi is transcendental; digits tell its sign."""
 
 
 @dataclass(frozen=True)
@@ -162,6 +168,7 @@ class Undecided:
 
 Reason = (
     Constant
+    | ByPi
     | ByCondition
     | ByTerms
     | BySquares

@@ -23,6 +23,7 @@ from closedform.algebra.sign_argument import (
     ByCondition,
     ByExpansion,
     ByFactors,
+    ByPi,
     BySquares,
     ByTerms,
     Combined,
@@ -82,9 +83,9 @@ class Facts:
         return self._answers[key]
 
     def _decided(self, element: Scalar, depth: int) -> SignArgument:
-        value = self.field.constant(element)
-        if value is not None:
-            return SignArgument(element, named(side(value)), Constant())
+        number = self._number(element)
+        if number is not None:
+            return number
         found: list[SignArgument] = []
         left = ANY
         last = self.in_one_parameter.signs(element) if depth else ()
@@ -134,12 +135,18 @@ class Facts:
             other = condition.comparison.element
             if len(element.numer) != len(other.numer) or len(element.denom) != len(other.denom):
                 continue  # no division is needed to see that it is no multiple
-            multiple = self.field.constant(element / other)
+            multiple = self._number(element / other)
             if multiple is not None:
-                values = product(condition.values, side(multiple))
-                scale = self.field.scalar(multiple)
-                argument = SignArgument(scale, named(side(multiple)), Constant())
-                yield values, ByCondition(condition.comparison, argument)
+                values = product(condition.values, multiple.values)
+                yield values, ByCondition(condition.comparison, multiple)
+
+    def _number(self, element: Scalar) -> SignArgument | None:
+        """The sign of a number, rational or in pi alone."""
+        sign = self.field.number_sign(element)
+        if sign is None:
+            return None
+        reason = ByPi() if self.field.holds_pi(element) else Constant()
+        return SignArgument(element, named(frozenset({sign})), reason)
 
     def _by_terms(self, element: Scalar) -> Iterator[tuple[Values, Reason]]:
         below = self.conditions.terms(element.denom) - {0}
@@ -190,9 +197,9 @@ class Facts:
     def _short(self, polynomial: ParameterPolynomial) -> SignArgument:
         """The sign of a rest by its terms, or by squares; nothing is factored."""
         element = self.field.of_polynomial(polynomial)
-        value = self.field.constant(element)
-        if value is not None:
-            return SignArgument(element, named(side(value)), Constant())
+        number = self._number(element)
+        if number is not None:
+            return number
         found = [(v, r) for v, r in self._by_terms(element) if v != ANY]
         for values, reason in found or self._by_squares(polynomial):
             return SignArgument(element, named(values), reason)

@@ -13,7 +13,7 @@ from fractions import Fraction
 from math import isqrt, lcm
 
 from closedform.algebra.field import Scalar, rational
-from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
+from closedform.algebra.parameter_field import PI, ParameterField, ParameterPolynomial
 from closedform.algebra.sign_argument import Square, Values
 
 __all__ = ["balanced", "coefficients_in", "completed", "joined"]
@@ -209,7 +209,7 @@ def completed(
     ring = polynomial.ring
     found: list[tuple[bool, Square, Scalar]] = []
     for name, x in zip(field.parameters, ring.gens, strict=True):
-        if polynomial.degree(x) != 2:
+        if name == PI or polynomial.degree(x) != 2:
             continue
         parts = coefficients_in(polynomial, ring.index(x))
         p, q = (field.of_polynomial(parts[k]) for k in (2, 1))
