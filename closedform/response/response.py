@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import cached_property
@@ -41,7 +42,8 @@ class ClosedForms:
     `modes` and `impulses` follow the factors of the spectrum; an impulse is
     g(t) = sum over the roots of e^(lambda t)/p'(lambda), given when a factor has degree 3 or more.
     `transition` has n rows of n formulas, or is empty beyond `LARGEST_WRITTEN_OUT` states;
-    `fronted_transition` is the same with what all entries share in front.
+    `fronted_transition` is the same with what all entries share in front.  `further` are the
+    entries of the response's further functions, row by row.
     """
 
     modes: tuple[tuple[Mode, ...], ...]
@@ -51,6 +53,7 @@ class ClosedForms:
     fronted_transition: tuple[Expression | None, tuple[tuple[Expression, ...], ...]]
     impulses: tuple[Expression | None, ...]
     constants: tuple[NamedConstant, ...]
+    further: tuple[tuple[Expression, ...], ...] = ()
 
     @property
     def names_amounts(self) -> bool:
@@ -62,7 +65,7 @@ class ClosedForms:
         """What there is to read: the operations in all formulas and written definitions."""
         definitions = (c.definition for c in self.constants)
         written = [d.formula for d in definitions if isinstance(d, Radical)]
-        rows = (*self.transition, self.solution, self.outputs, written)
+        rows = (*self.transition, self.solution, self.outputs, *self.further, written)
         return sum(operations(formula) for row in rows for formula in row)
 
 
@@ -74,7 +77,8 @@ class Response:
     `solution_at` give certified numbers.
 
     Shapes:  `exponential` is e^(At), n x n; `state` is x(t), n x 1; `output` is y(t), or
-    None when the model asks for no outputs.
+    None when the model asks for no outputs.  `further` are other functions with the same
+    exponentials that were asked for.
     """
 
     model: Model
@@ -86,6 +90,7 @@ class Response:
     exponential: ExponentialMatrix
     state: ExponentialMatrix
     output: ExponentialMatrix | None
+    further: ExponentialMatrix | None = None
 
     @cached_property
     def closed_forms(self) -> ClosedForms:
@@ -135,8 +140,12 @@ class Response:
         return [row[0] for row in _rows(balls)]
 
 
-def respond(model: Model) -> Response:
+def respond(
+    model: Model, *, further: Callable[[ExponentialMatrix], ExponentialMatrix] | None = None
+) -> Response:
     """Return the exact response of a model: e^(At), x(t) and the outputs.
+
+    `further` makes other functions of e^(At), to be written with the same names.
 
     Shapes:  n states give an n x n transition matrix and n formulas of the solution.
     Units:   those of the model; time in the unit of the rates' inverse.
@@ -163,7 +172,10 @@ def respond(model: Model) -> Response:
         weights = [[field.scalar(w) for w in output.weights] for output in model.outputs]
         output = state.after(field.matrix(weights))
     jordan = jordan_form(field, matrix, spectrum)
-    return Response(model, field, matrix, initial, spectrum, jordan, exponential, state, output)
+    others = further(exponential) if further is not None else None
+    return Response(
+        model, field, matrix, initial, spectrum, jordan, exponential, state, output, others
+    )
 
 
 def written_out(response: Response) -> ClosedForms:
@@ -210,6 +222,13 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     else:
         solution = column(response.state)
         outputs = column(response.output)
+    further: tuple[tuple[Expression, ...], ...] = ()
+    if response.further is not None:
+        rows, columns = map(range, response.further.shape)
+        further = tuple(
+            tuple(closed_form(parts(response.further, i, k), model.time) for k in columns)
+            for i in rows
+        )
     needs_impulses = not all(factor.has_short_roots for factor in factors)
     impulses = tuple(
         _impulse(response.field, factor, modes_of_factor, book, model.time)
@@ -223,7 +242,9 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
         entries = [[parts(response.exponential, i, k) for k in range(n)] for i in range(n)]
         transition = tuple(tuple(closed_form(e, model.time) for e in row) for row in entries)
         fronted = fronted_matrix(entries, transition, model.time)
-    return ClosedForms(modes, solution, outputs, transition, fronted, impulses, book.constants())
+    return ClosedForms(
+        modes, solution, outputs, transition, fronted, impulses, book.constants(), further
+    )
 
 
 def _impulse(

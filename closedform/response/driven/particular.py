@@ -19,7 +19,7 @@ from closedform.algebra.root_matrix import RootMatrix
 from closedform.algebra.waves import Constant, ConstantColumns, gathered_columns
 from closedform.model.driven.generator import Tone
 
-__all__ = ["Drive", "at_instant", "combined", "of_input", "shifted_polynomials", "without"]
+__all__ = ["Drive", "at_instant", "combined", "constants_of", "of_input", "rebased"]
 
 
 @dataclass(frozen=True)
@@ -47,11 +47,6 @@ class Drive:
 def of_input(drive: Drive, function: ExponentialMatrix) -> ExponentialMatrix:
     """Return the terms of a function that belong to eigenvalues of the generator."""
     return _kept(function, [drive.tone_of(term.factor.p) is not None for term in function.terms])
-
-
-def without(function: ExponentialMatrix, other: ExponentialMatrix) -> ExponentialMatrix:
-    """Return function - other."""
-    return combined(((1, function), (-1, other)))
 
 
 def combined(parts: Iterable[tuple[int | Scalar, ExponentialMatrix]]) -> ExponentialMatrix:
@@ -103,7 +98,55 @@ def at_instant(drive: Drive, function: ExponentialMatrix, d: Scalar) -> Constant
     return gathered_columns(parts)
 
 
-def shifted_polynomials(function: ExponentialMatrix, d: Scalar) -> ExponentialMatrix:
+def constants_of(function: ExponentialMatrix, *, kept: bool = True) -> ExponentialMatrix:
+    """Return the terms of a function that belong to the eigenvalue 0; the others if not `kept`."""
+    return _kept(function, [_is_zero_root(term) == kept for term in function.terms])
+
+
+def rebased(
+    field: BaseField, parts: Sequence[tuple[Scalar, ExponentialMatrix]], at: Scalar
+) -> list[tuple[Scalar, ExponentialMatrix]]:
+    """Return the polynomials in functions of t - origin, counted from as few origins as can be.
+
+    Constants count from `at`, as they may from anywhere.  Polynomials of one origin keep it;
+    those of several are added up, counted from where they have the fewest coefficients.
+    """
+    own = [(origin, constants_of(function)) for origin, function in parts]
+    moving = [(origin, f) for origin, f in own if _moves(f)]
+    still = [f for _, f in own if not _moves(f)]
+    found = [(at, combined((1, f) for f in still))] if still else []
+    if len({origin for origin, _ in moving}) < 2:
+        return [*found, *moving]
+    bases = dict.fromkeys((field.domain.zero, *(origin for origin, _ in moving)))
+    totals = [
+        (base, combined((1, _shifted(f, base - origin)) for origin, f in moving)) for base in bases
+    ]
+    base, total = min(totals, key=lambda pair: _coefficients(pair[1]))
+    return [*found, (base if _moves(total) else at, total)]
+
+
+def _moves(function: ExponentialMatrix) -> bool:
+    """Whether a function of the eigenvalue 0 is not constant."""
+    return any(not residue.is_zero for term in function.terms for residue in term.residues[1:])
+
+
+def _coefficients(function: ExponentialMatrix) -> int:
+    """The number of coefficients that are not zero."""
+    return sum(
+        bool(element)
+        for term in function.terms
+        for residue in term.residues
+        for matrix in residue.coefficients
+        for row in matrix.to_list()
+        for element in row
+    )
+
+
+def _is_zero_root(term: ModalTerm) -> bool:
+    return term.factor.degree == 1 and not any(term.factor.p.to_list()[1:])
+
+
+def _shifted(function: ExponentialMatrix, d: Scalar) -> ExponentialMatrix:
     """Return F(t + d) of a function whose terms all belong to the eigenvalue 0."""
     field = function.field
     terms = []

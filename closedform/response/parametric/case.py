@@ -44,7 +44,8 @@ class Case:
     `conditions` say which part it is, none where it is all of the domain; `domain` is that
     part.  `exponential`, `state` and `output` are exact, over the field of the model, with
     the equations of the branch put in.  `abbreviated` tells which abbreviations stand for
-    which parameters, and to what extent.
+    which parameters, and to what extent.  `further` are other functions with the same
+    exponentials that were asked for, `further_formulas` their entries.
     """
 
     number: int
@@ -61,6 +62,8 @@ class Case:
     transition: FormulaMatrix
     fronted: tuple[Expression | None, Rows]
     abbreviated: tuple[tuple[str, str, Extent], ...] = ()
+    further: ExponentialMatrix | None = None
+    further_formulas: Rows = ()
 
     @property
     def condition(self) -> str:

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from itertools import product
 
 from closedform.algebra.branches import Branch, case_tree, put_in, uncovered
 from closedform.algebra.domain import Comparison, ParameterDomain
+from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import FieldMatrix
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import regimes_of
@@ -108,8 +110,13 @@ def _condition_latex(case: Case) -> str:
     return r" \text{ and } ".join(parts)
 
 
-def respond_in_cases(model: ParametricModel) -> ParametricResponse:
+def respond_in_cases(
+    model: ParametricModel, *, further: Callable[[Branch], ExponentialMatrix] | None = None
+) -> ParametricResponse:
     """Return the exact response of a model with parameters, in every case.
+
+    `further` makes other functions of the exponential of a branch, to be written with the
+    same names.
 
     Exact:   no floating-point number takes part.  Nothing is proved yet: see `verify`.
     Raises:  RootsUnknownError where it is not known how the roots of a factor lie.
@@ -131,9 +138,11 @@ def respond_in_cases(model: ParametricModel) -> ParametricResponse:
             regimes_of(field, factor, structure, branch.domain)
             for factor, structure in zip(branch.spectrum.factors, branch.structures, strict=True)
         ]
+        others = further(branch) if further is not None else None
         first: Case | None = None
         for regimes in product(*ways):
-            case = written_case(model, branch, regimes, (state, output), len(cases), first)
+            functions = (state, output, others)
+            case = written_case(model, branch, regimes, functions, len(cases), first)
             if case is not None:
                 first = first or case
                 cases.append(case)

@@ -13,7 +13,7 @@ from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import Regime
 from closedform.model.parametric import ParametricModel
-from closedform.notation.expression import operations
+from closedform.notation.expression import Expression, operations
 from closedform.notation.shown import FormulaColumn, FormulaMatrix
 from closedform.response.parametric.case import Case, WrittenQuantity
 from closedform.response.parametric.closed_form import closed_form, fronted_matrix
@@ -64,13 +64,13 @@ def written_case(
     model: ParametricModel,
     branch: Branch,
     regimes: tuple[Regime, ...],
-    functions: tuple[ExponentialMatrix, ExponentialMatrix | None],
+    functions: tuple[ExponentialMatrix, ExponentialMatrix | None, ExponentialMatrix | None],
     number: int,
     like: Case | None = None,
 ) -> Case | None:
     """Return a branch in one regime, with its formulas in their shortest form.
 
-    `functions` are x(t) and the outputs.  `like` is a case of the same branch whose
+    `functions` are x(t), the outputs, and further ones.  `like` is a case of the same branch whose
     abbreviations are taken over, so that the regimes can be read side by side.  None if the
     conditions of the case contradict each other.
     """
@@ -132,7 +132,18 @@ def written_case(
         FormulaMatrix(transition),
         fronted_matrix(writing, rows, transition, model.time),
         tuple((r.name, r.parameter, extent) for r, extent in used),
+        functions[2],
+        _in_rows(formulas[n + m :], functions[2]),
     )
+
+
+def _in_rows(
+    formulas: Sequence[Expression], function: ExponentialMatrix | None
+) -> tuple[tuple[Expression, ...], ...]:
+    if function is None:
+        return ()
+    rows, columns = function.shape
+    return tuple(tuple(formulas[i * columns : (i + 1) * columns]) for i in range(rows))
 
 
 def _writing_field(

@@ -1,0 +1,150 @@
+"""Formulas of the driven solution: columns shifted to their origins, and added up."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import replace
+
+from closedform.algebra.field import BaseField, Scalar
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.waves import Constant
+from closedform.notation.expression import (
+    ZERO,
+    Call,
+    Expression,
+    Name,
+    Negation,
+    Number,
+    Power,
+    Product,
+    Quotient,
+    Sum,
+    product,
+)
+from closedform.notation.rational_formula import rational_formula
+from closedform.notation.terms import negated, opened, sum_of, surd_formula
+from closedform.response.driven.functions import Interval, Summand, Switch
+
+__all__ = ["constant_formula", "element_formula", "interval_formula", "shifted", "step_formula"]
+
+Rows = tuple[tuple[Expression, ...], ...]
+
+
+def element_formula(field: BaseField, element: Scalar) -> Expression:
+    """Return an element of the field of a model as a formula."""
+    if isinstance(field, ParameterField):
+        return rational_formula(field, element)
+    return surd_formula(field.surds(element))
+
+
+def constant_formula(field: BaseField, constant: Constant) -> Expression | None:
+    """Return e^growth · kernel(angle) as a formula, None for 1."""
+    factors: list[Expression] = []
+    if constant.growth:
+        factors.append(Call("exp", element_formula(field, constant.growth)))
+    if constant.kernel != "one":
+        factors.append(Call(constant.kernel, element_formula(field, constant.angle)))
+    return product(factors) if factors else None
+
+
+def shifted(formula: Expression, time: str, origin: Expression) -> Expression:
+    """Return a formula with t - origin in the place of the time t.
+
+    A product c t with the origin b/c becomes c t - b: sin(w t + phi), not sin(w (t + phi/w)).
+    """
+    if origin == ZERO:
+        return formula
+    later = sum_of([Name(time), negated(origin)])
+
+    def put(node: Expression) -> Expression:
+        match node:
+            case Name(text):
+                return later if text == time else node
+            case Number():
+                return node
+            case Negation(operand):
+                return replace(node, operand=put(operand))
+            case Sum(terms):
+                return sum_of([put(term) for term in terms])
+            case Product(factors):
+                return _turned(node, time, origin) or product(put(f) for f in factors)
+            case Quotient(above, below):
+                return Quotient(put(above), put(below))
+            case Power(base, exponent):
+                return Power(put(base), put(exponent))
+            case Call(function, argument):
+                return Call(function, put(argument))
+
+    return put(formula)
+
+
+def _turned(node: Product, time: str, origin: Expression) -> Expression | None:
+    """The product less an angle b, for a product c t and the origin b/c; else None."""
+    rest = [f for f in node.factors if f != Name(time)]
+    inside = origin.operand if isinstance(origin, Negation) else origin
+    if len(rest) != len(node.factors) - 1:
+        return None
+    match product(rest), inside:
+        case Number(rate), Number(delay) if delay.denominator != 1:
+            turned = rate * delay
+            if turned.denominator >= delay.denominator:
+                return None
+            angle: Expression = Number(turned)
+        case rate, Quotient(above, below) if rate == below:
+            angle = above
+        case _:
+            return None
+    return sum_of([node, angle if isinstance(origin, Negation) else negated(angle)])
+
+
+def interval_formula(
+    field: BaseField, columns: Rows, row: int, interval: Interval, time: str
+) -> Expression:
+    """Return one row of the solution in one interval."""
+    return _total(field, columns, row, interval.summands, time)
+
+
+def step_formula(
+    field: BaseField,
+    columns: Rows,
+    row: int,
+    first: Interval,
+    switches: Sequence[Switch],
+    time: str,
+) -> Expression:
+    """Return one row of the solution for all times, with step(t - a) for what joins at a."""
+    terms = [_total(field, columns, row, first.summands, time)]
+    for switch in switches:
+        joined = _total(field, columns, row, switch.summands, time)
+        if joined == ZERO:
+            continue
+        at = sum_of([Name(time), negated(element_formula(field, switch.at))])
+        terms.append(_times(Call("step", at), joined))
+    kept = [term for term in terms if term != ZERO]
+    return opened(sum_of(kept)) if kept else ZERO
+
+
+def _total(
+    field: BaseField,
+    columns: Rows,
+    row: int,
+    summands: Sequence[Summand],
+    time: str,
+) -> Expression:
+    terms = []
+    for summand in summands:
+        formula = columns[row][summand.place]
+        if formula == ZERO:
+            continue
+        moved = shifted(formula, time, element_formula(field, summand.origin))
+        constant = constant_formula(field, summand.constant)
+        terms.append(moved if constant is None else _times(constant, moved))
+    return opened(sum_of(terms)) if terms else ZERO
+
+
+def _times(factor: Expression, formula: Expression) -> Expression:
+    if isinstance(formula, Negation):
+        return Negation(product((factor, formula.operand)))
+    if isinstance(formula, Sum) and all(isinstance(t, Negation) for t in formula.terms):
+        return Negation(product((factor, Sum(tuple(map(negated, formula.terms))))))
+    return product((factor, formula))
