@@ -12,6 +12,11 @@ from typing import TYPE_CHECKING
 from closedform.notation.plain import plain
 
 if TYPE_CHECKING:
+    from closedform.notation.equation import (
+        read_equation,
+        read_jet_formula,
+        read_signal_formula,
+    )
     from closedform.notation.evaluation import enclose
     from closedform.notation.exact import exact_value
     from closedform.notation.linear import linear_combination
@@ -26,7 +31,10 @@ __all__ = [
     "plain",
     "rational_combination",
     "rational_value",
+    "read_equation",
     "read_formula",
+    "read_jet_formula",
+    "read_signal_formula",
     "surd_formula",
 ]
 
@@ -36,7 +44,10 @@ _HOMES = {
     "linear_combination": "closedform.notation.linear",
     "rational_combination": "closedform.notation.rational",
     "rational_value": "closedform.notation.rational",
+    "read_equation": "closedform.notation.equation",
     "read_formula": "closedform.notation.reader",
+    "read_jet_formula": "closedform.notation.equation",
+    "read_signal_formula": "closedform.notation.equation",
     "surd_formula": "closedform.notation.terms",
 }
 

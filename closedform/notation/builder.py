@@ -18,7 +18,7 @@ from closedform.notation.expression import (
     Quotient,
     Sum,
 )
-from closedform.notation.greek import ascii_name
+from closedform.notation.jets import spelled
 
 __all__ = ["DEEPEST", "Builder", "DivisionError", "Part", "TooDeepError"]
 
@@ -95,11 +95,11 @@ class Builder(Transformer[Token, Part]):
     def call(self, children: list[Any]) -> Part:
         """A function and its argument."""
         function, _, argument, _ = children
-        return Part(Call(str(function), argument.node), _above(1, [argument]))
+        return Part(Call(spelled(function), argument.node), _above(1, [argument]))
 
     def name(self, children: list[Any]) -> Part:
         """A name, in ASCII spelling."""
-        return Part(Name(ascii_name(children[0])))
+        return Part(Name(spelled(children[0])))
 
     def number(self, children: list[Any]) -> Part:
         """A number, exactly."""

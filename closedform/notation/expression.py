@@ -13,7 +13,9 @@ from fractions import Fraction
 from typing import TypeGuard
 
 __all__ = [
+    "FUNCTIONS",
     "ONE",
+    "SIGNALS",
     "ZERO",
     "Call",
     "Expression",
@@ -33,7 +35,10 @@ __all__ = [
     "product",
 ]
 
-FUNCTIONS = ("exp", "sin", "cos", "sinh", "cosh", "sqrt")
+FUNCTIONS = ("exp", "sin", "cos", "sinh", "cosh", "sqrt", "step")
+"""Names that mean a function wherever they stand, and so can name nothing else."""
+SIGNALS = ("step", "delta")
+"""Unit step and unit impulse, which inputs are made of; `delta` may name something else too."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,7 +50,10 @@ class Number:
 
 @dataclass(frozen=True, slots=True)
 class Name:
-    """A named quantity in its ASCII spelling: a state, the time, a root (``omega_1``)."""
+    """A named quantity in its ASCII spelling: a state, the time, a root (``omega_1``).
+
+    With primes behind it, ``x1''``, it is a derivative with respect to the time.
+    """
 
     text: str
 
@@ -89,7 +97,7 @@ class Power:
 
 @dataclass(frozen=True, slots=True)
 class Call:
-    """One of `FUNCTIONS` applied to one argument."""
+    """A function of one argument: one of `FUNCTIONS` and `SIGNALS`, or an input ``u(t - 2)``."""
 
     function: str
     argument: Expression

@@ -8,6 +8,8 @@ How it reads, where people might differ:
 - ``1e-3`` is a number and so is ``2e1``, unless ``e1`` is a declared name: then the latter
   is refused.  ``2e`` is twice the name ``e``.
 - A declared name wins over everything but the names of the functions.
+- Where the time goes on, `read_equation` and its like also read x1'', u(t - 2), step(t - 2)
+  and delta(t); what a name may be there is said by a `Vocabulary`.
 """
 
 from __future__ import annotations
@@ -34,11 +36,21 @@ from closedform.notation.errors import (
     quoted,
 )
 from closedform.notation.expression import Expression
-from closedform.notation.greek import ascii_name
+from closedform.notation.jets import jet_of, spelled
 from closedform.notation.mistakes import MISTAKES
 from closedform.notation.plain import plain
+from closedform.notation.timed_mistakes import TIMED_MISTAKES, why_name, why_stray
+from closedform.notation.vocabulary import Vocabulary
 
-__all__ = ["LARGEST_EXPONENT", "LONGEST", "MOST_DIGITS", "NOWHERE", "place_of", "read_formula"]
+__all__ = [
+    "LARGEST_EXPONENT",
+    "LONGEST",
+    "MOST_DIGITS",
+    "NOWHERE",
+    "place_of",
+    "read_formula",
+    "read_with",
+]
 
 LONGEST = 100_000
 """Characters of one formula."""
@@ -68,14 +80,22 @@ def read_formula(text: str, *, names: frozenset[str], place: Place = NOWHERE) ->
     >>> read_formula("-x/2", names=frozenset({"x"}))
     Negation(operand=Quotient(numerator=Name(text='x'), denominator=Number(value=Fraction(2, 1))))
     """
+    return read_with(text, Vocabulary(names), place)
+
+
+def read_with(text: str, vocabulary: Vocabulary, place: Place) -> Expression:
+    """Return the tree of a formula whose names are used as a vocabulary says.
+
+    Raises what `read_formula` raises.
+    """
     if len(text) > LONGEST:
         raise FormulaLengthError(place, len(text), LONGEST)
-    tokens, found = _parse(text, names)
+    tokens, found = _parse(text, vocabulary)
     if isinstance(found, _Stop):
-        raise _refusal(found, text, place)
+        raise _refusal(found, text, vocabulary, place)
     for token in tokens:
-        if token.type == "NAME" and ascii_name(token) not in names:
-            raise _undeclared(token, names, place_of(text, _start(token), place))
+        if token.type == "NAME" and not vocabulary.knows(jet_of(spelled(token))[0]):
+            raise _undeclared(token, vocabulary, place_of(text, _start(token), place))
     return found
 
 
@@ -98,16 +118,28 @@ def _parser() -> Lark:
     return Lark(grammar, start="sum", parser="lalr", lexer="basic", transformer=Builder())
 
 
-def _parse(text: str, names: frozenset[str]) -> tuple[list[Token], Expression | _Stop]:
+def _lexed(text: str) -> tuple[list[Token], int | None]:
+    """Return the tokens of a text, and where there is a character that begins none."""
+    tokens = []
+    try:
+        for token in _parser().lex(text):
+            tokens.append(token)  # noqa: PERF402  those before a bad character are kept
+    except UnexpectedCharacters as error:
+        return tokens, error.pos_in_stream or 0
+    return tokens, None
+
+
+def _parse(text: str, vocabulary: Vocabulary) -> tuple[list[Token], Expression | _Stop]:
     """Return the tokens read, and the tree or where reading stopped."""
+    lexed, stray = _lexed(text)
     tokens: list[Token] = []
     opened: list[Token] = []
     before = "START"
     parser = _parser().parse_interactive("")
     token = None
     try:
-        for token in _parser().lex(text):
-            if why := _objection(before, token, len(opened), names):
+        for token in vocabulary.applied(lexed):
+            if why := _objection(before, token, len(opened), vocabulary):
                 return tokens, _Stop(why, _start(token), _start(token) + len(token))
             parser.feed_token(token)
             tokens.append(token)
@@ -116,10 +148,10 @@ def _parse(text: str, names: frozenset[str]) -> tuple[list[Token], Expression | 
                 opened.append(token)
             elif before == "CLOSE":
                 opened.pop()
+        if stray is not None:
+            why = why_stray(text[stray], lexed[-1].type if lexed else "START", vocabulary)
+            return tokens, _Stop(why, stray, stray + 1)
         part: Part = parser.feed_eof()  # type: ignore[no-untyped-call]
-    except UnexpectedCharacters as error:
-        start = error.pos_in_stream or 0
-        return tokens, _Stop(("CHARACTER",), start, start + 1)
     except UnexpectedToken as error:
         if error.token.type != "$END":
             start = _start(error.token)
@@ -137,8 +169,10 @@ def _parse(text: str, names: frozenset[str]) -> tuple[list[Token], Expression | 
 OPERATORS = frozenset({"PLUS", "MINUS", "TIMES", "OVER", "POWER", "FUNCTION"})
 
 
-def _objection(before: str, token: Token, depth: int, names: frozenset[str]) -> tuple[str, ...]:
+def _objection(before: str, token: Token, depth: int, vocabulary: Vocabulary) -> tuple[str, ...]:
     """Return why a token is refused although the grammar may take it, or nothing."""
+    if token.type in ("NAME", "FUNCTION"):
+        return why_name(token, vocabulary)
     if token.type == "OPEN" and before == "NAME":
         return before, token.type
     if token.type == "OPEN" and depth == DEEPEST:
@@ -154,10 +188,10 @@ def _objection(before: str, token: Token, depth: int, names: frozenset[str]) -> 
     if abs(int(exponent)) > LARGEST_EXPONENT:
         return ("SIZE",)
     letter = re.search("[eE][0-9]+$", token)
-    return ("EXPONENT",) if letter and letter[0] in names else ()
+    return ("EXPONENT",) if letter and letter[0] in vocabulary.names else ()
 
 
-def _refusal(stop: _Stop, text: str, place: Place) -> FormulaError:
+def _refusal(stop: _Stop, text: str, vocabulary: Vocabulary, place: Place) -> FormulaError:
     """Return the error for the place where reading stopped."""
     place = place_of(text, stop.start, place)
     found = text[stop.start : stop.end]
@@ -176,25 +210,31 @@ def _refusal(stop: _Stop, text: str, place: Place) -> FormulaError:
             return AmbiguousFormulaError(place, "a division by adjoining factors", (first, second))
         case ("CHARACTER",) if found == "∞":
             return NotFiniteError(place, found)
-    mistake, advice = _mistakes()[stop.why]
+    mistake, advice = _mistakes(vocabulary.signals)[stop.why]
     return FormulaSyntaxError(place, mistake, found, advice)
 
 
 @cache
-def _mistakes() -> dict[tuple[str, ...], tuple[str, str]]:
+def _mistakes(signals: bool) -> dict[tuple[str, ...], tuple[str, str]]:  # noqa: FBT001  a cache takes no keyword
     """Return the table of mistakes by where reading stops in its inputs."""
+    x, k, t = map(frozenset, "xkt")
     table = {}
-    for mistake, advice, inputs in MISTAKES:
-        for text in inputs:
-            _, stop = _parse(text, frozenset("x"))
-            if isinstance(stop, _Stop):
-                table[stop.why] = (mistake, advice)
+    for rows, vocabulary in (
+        (MISTAKES, Vocabulary(x)),
+        (TIMED_MISTAKES if signals else (), Vocabulary(k | t, x, "t", signals=True)),
+    ):
+        for mistake, advice, inputs in rows:
+            for text in inputs:
+                _, stop = _parse(text, vocabulary)
+                if isinstance(stop, _Stop):
+                    table[stop.why] = (mistake, advice)
     return table
 
 
-def _undeclared(token: Token, names: frozenset[str], place: Place) -> FormulaError:
-    """Return the error for a name that is not among `names`."""
-    name = ascii_name(token)
+def _undeclared(token: Token, vocabulary: Vocabulary, place: Place) -> FormulaError:
+    """Return the error for a name that a vocabulary does not know."""
+    names = vocabulary.names | (vocabulary.functions or frozenset())
+    name, _ = jet_of(spelled(token))
     if name.lower() in NOT_FINITE:
         return NotFiniteError(place, name)
     near = get_close_matches(name, sorted(names), n=1) or get_close_matches(

@@ -13,7 +13,7 @@ from fractions import Fraction
 from functools import cached_property, lru_cache
 from operator import attrgetter
 
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.notation.choice import places_of, shortest_of
 from closedform.notation.expression import (
     ONE,
@@ -161,8 +161,9 @@ def _is_long(factor: Expression) -> bool:
 
 
 def monomial_weight(field: ParameterField, exponents: Sequence[int], number: Fraction) -> Weight:
-    """Return number · product of parameter^exponent."""
+    """Return number · product of parameter^exponent, pi behind the number: 2 pi w."""
     pairs = list(zip(field.parameters, exponents, strict=True))
+    pairs.sort(key=lambda pair: pair[0] != PI)
     above = tuple(power_of(Name(n), e) for n, e in pairs if e > 0)
     below = tuple(power_of(Name(n), -e) for n, e in pairs if e < 0)
     return Weight(number, above, below, sum(abs(e) > 1 for e in exponents))
