@@ -140,7 +140,7 @@ class _Assembly:
         jumps = [self._jump(k) for k in range(last + 1)]
         driven: list[list[_Part]] = []
         for k in range(last + 1):
-            parts = [part for on in self.on if _is_on(on, k) for part in self._particular(on)]
+            parts = self._sustained(k)
             parts += [p for j in range(k + 1) for p in self._started(j, jumps[j])]
             driven.append(parts)
         intervals = tuple(
@@ -152,14 +152,21 @@ class _Assembly:
             for k, parts in enumerate(driven)
         )
         switches = tuple(self._switch(k, jumps[k]) for k in range(1, last + 1))
-        held = self._summands(
-            self._merged(
-                [p for on in self.on if _is_on(on, last) for p in self._particular(on)],
-                self.instants[last],
-            )
+        sustained = tuple(
+            self._interval(k, self._merged(self._sustained(k), self.instants[k]))
+            for k in range(last + 1)
         )
         free_part = self._summands(self._merged(free, self.instants[0]))
-        return DrivenFunctions(self._all_columns(), intervals, switches, free_part, forced, held)
+        return DrivenFunctions(
+            self._all_columns(),
+            intervals,
+            switches,
+            free_part,
+            forced,
+            sustained[last].summands,
+            sustained,
+            tuple(jumps),
+        )
 
     # What each part is made of
 
@@ -190,6 +197,10 @@ class _Assembly:
     def _particular(self, on: _On) -> list[_Part]:
         function = self._particular_function(on).after(self.rows)
         return [_Part(self.put(on.wave.origin), ONE(self.base), function)]
+
+    def _sustained(self, k: int) -> list[_Part]:
+        """What the waves that are on in an interval sustain."""
+        return [part for on in self.on if _is_on(on, k) for part in self._particular(on)]
 
     def _jump(self, k: int) -> ConstantColumns:
         """h_k: impulses at an instant, less what the particular responses change there."""

@@ -14,7 +14,7 @@ from dataclasses import dataclass
 
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import Scalar
-from closedform.algebra.waves import Constant
+from closedform.algebra.waves import Constant, ConstantColumns
 
 __all__ = ["DrivenFunctions", "Interval", "Summand", "Switch"]
 
@@ -58,7 +58,9 @@ class DrivenFunctions:
     the first switching, and `switches` tell what joins at each, so that
     x = first interval + sum over switches of step(t - at) · (its summands).
     `free` is the response to the initial values alone, `forced` the rest, in the same
-    intervals.  `held` are the parts of the last interval that the waves still on sustain.
+    intervals.  `held` are the parts of the last interval that the waves still on sustain;
+    `sustained` are these in each interval.  `jumps` are h_j of all instants, n x 1, the
+    initial values left out of the first.
     """
 
     columns: ExponentialMatrix
@@ -67,3 +69,5 @@ class DrivenFunctions:
     free: tuple[Summand, ...]
     forced: tuple[Interval, ...]
     held: tuple[Summand, ...]
+    sustained: tuple[Interval, ...] = ()
+    jumps: tuple[ConstantColumns, ...] = ()
