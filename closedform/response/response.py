@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import cached_property
@@ -22,9 +22,11 @@ from closedform.algebra.root_matrix import RootMatrix
 from closedform.algebra.spectrum import Factor, Spectrum, spectrum_of
 from closedform.algebra.surds import SurdSum
 from closedform.model.model import Model
-from closedform.notation.expression import Expression, operations
+from closedform.notation.expression import Expression, Name, operations
 from closedform.notation.plain import plain
 from closedform.notation.shown import FormulaColumn, FormulaMatrix
+from closedform.notation.terms import surd_formula
+from closedform.response.by_mode import ByMode, ModePart
 from closedform.response.closed_form import closed_form, fronted_matrix
 from closedform.response.modes import Contribution, Mode, contributions, modes_of
 from closedform.response.names import NameBook, NamedConstant, Radical, ResiduePart
@@ -43,7 +45,8 @@ class ClosedForms:
     g(t) = sum over the roots of e^(lambda t)/p'(lambda), given when a factor has degree 3 or more.
     `transition` has n rows of n formulas, or is empty beyond `LARGEST_WRITTEN_OUT` states;
     `fronted_transition` is the same with what all entries share in front.  `further` are the
-    entries of the response's further functions, row by row.
+    entries of the response's further functions, row by row, `by_mode` those that are to be
+    taken apart by modes.
     """
 
     modes: tuple[tuple[Mode, ...], ...]
@@ -54,6 +57,7 @@ class ClosedForms:
     impulses: tuple[Expression | None, ...]
     constants: tuple[NamedConstant, ...]
     further: tuple[tuple[Expression, ...], ...] = ()
+    by_mode: ByMode = ()
 
     @property
     def names_amounts(self) -> bool:
@@ -78,7 +82,7 @@ class Response:
 
     Shapes:  `exponential` is e^(At), n x n; `state` is x(t), n x 1; `output` is y(t), or
     None when the model asks for no outputs.  `further` are other functions with the same
-    exponentials that were asked for.
+    exponentials that were asked for, `parted` those to be written mode by mode.
     """
 
     model: Model
@@ -91,6 +95,7 @@ class Response:
     state: ExponentialMatrix
     output: ExponentialMatrix | None
     further: ExponentialMatrix | None = None
+    parted: ExponentialMatrix | None = None
 
     @cached_property
     def closed_forms(self) -> ClosedForms:
@@ -141,11 +146,15 @@ class Response:
 
 
 def respond(
-    model: Model, *, further: Callable[[ExponentialMatrix], ExponentialMatrix] | None = None
+    model: Model,
+    *,
+    further: Callable[[ExponentialMatrix], ExponentialMatrix] | None = None,
+    parted: Callable[[ExponentialMatrix], ExponentialMatrix | None] | None = None,
 ) -> Response:
     """Return the exact response of a model: e^(At), x(t) and the outputs.
 
-    `further` makes other functions of e^(At), to be written with the same names.
+    `further` makes other functions of e^(At), to be written with the same names, `parted`
+    some to be written mode by mode.
 
     Shapes:  n states give an n x n transition matrix and n formulas of the solution.
     Units:   those of the model; time in the unit of the rates' inverse.
@@ -173,8 +182,9 @@ def respond(
         output = state.after(field.matrix(weights))
     jordan = jordan_form(field, matrix, spectrum)
     others = further(exponential) if further is not None else None
+    apart = parted(exponential) if parted is not None else None
     return Response(
-        model, field, matrix, initial, spectrum, jordan, exponential, state, output, others
+        model, field, matrix, initial, spectrum, jordan, exponential, state, output, others, apart
     )
 
 
@@ -229,6 +239,12 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
             tuple(closed_form(parts(response.further, i, k), model.time) for k in columns)
             for i in rows
         )
+    by_mode: ByMode = ()
+    if response.parted is not None:
+        rows, columns = map(range, response.parted.shape)
+        by_mode = tuple(
+            tuple(_by_mode(parts(response.parted, i, k), model.time) for k in columns) for i in rows
+        )
     needs_impulses = not all(factor.has_short_roots for factor in factors)
     impulses = tuple(
         _impulse(response.field, factor, modes_of_factor, book, model.time)
@@ -243,8 +259,25 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
         transition = tuple(tuple(closed_form(e, model.time) for e in row) for row in entries)
         fronted = fronted_matrix(entries, transition, model.time)
     return ClosedForms(
-        modes, solution, outputs, transition, fronted, impulses, book.constants(), further
+        modes, solution, outputs, transition, fronted, impulses, book.constants(), further, by_mode
     )
+
+
+def _by_mode(contributions: Sequence[Contribution], time: str) -> tuple[ModePart, ...]:
+    return tuple(
+        ModePart(
+            _number_formula(c.mode.rate),
+            c.mode.kind,
+            None if c.mode.frequency is None else _number_formula(c.mode.frequency),
+            len(c.amounts) - 1,
+            closed_form([c], time),
+        )
+        for c in contributions
+    )
+
+
+def _number_formula(value: SurdSum | str) -> Expression:
+    return Name(value) if isinstance(value, str) else surd_formula(value)
 
 
 def _impulse(

@@ -11,12 +11,13 @@ from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.regimes import Regime
 from closedform.notation.expression import Expression
 from closedform.notation.shown import FormulaColumn, FormulaMatrix
+from closedform.response.by_mode import ByMode
 from closedform.response.parametric.conditions import WrittenComparison
 from closedform.response.parametric.modes import Mode
 from closedform.response.parametric.quantities import RootDefinition
 from closedform.response.parametric.rewriting import Extent
 
-__all__ = ["Case", "Origin", "WrittenQuantity"]
+__all__ = ["Case", "Origin", "Sought", "WrittenQuantity"]
 
 Rows = tuple[tuple[Expression, ...], ...]
 Origin = Literal["roots", "user", "trade"]
@@ -37,6 +38,16 @@ class WrittenQuantity:
 
 
 @dataclass(frozen=True)
+class Sought:
+    """The functions that are written for a case: x(t), the outputs, and what was asked for."""
+
+    state: ExponentialMatrix
+    output: ExponentialMatrix | None
+    further: ExponentialMatrix | None = None
+    parted: ExponentialMatrix | None = None
+
+
+@dataclass(frozen=True)
 class Case:
     """The closed form on one part of the domain.
 
@@ -45,7 +56,8 @@ class Case:
     part.  `exponential`, `state` and `output` are exact, over the field of the model, with
     the equations of the branch put in.  `abbreviated` tells which abbreviations stand for
     which parameters, and to what extent.  `further` are other functions with the same
-    exponentials that were asked for, `further_formulas` their entries.
+    exponentials that were asked for, `further_formulas` their entries; `parted` are
+    some that `by_mode` takes apart.
     """
 
     number: int
@@ -64,6 +76,8 @@ class Case:
     abbreviated: tuple[tuple[str, str, Extent], ...] = ()
     further: ExponentialMatrix | None = None
     further_formulas: Rows = ()
+    parted: ExponentialMatrix | None = None
+    by_mode: ByMode = ()
 
     @property
     def condition(self) -> str:

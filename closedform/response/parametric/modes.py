@@ -46,10 +46,11 @@ def modes_of(
     field: ParameterField, factors: Sequence[Factor], regimes: Sequence[Regime], letters: Letters
 ) -> tuple[Mode, ...]:
     """Return one mode per factor, its names taken from `letters`."""
-    kinds = [r.kind for r in regimes]
+    pairs = list(zip(factors, regimes, strict=True))
+    stems = [_stem(field, factor, regime) for factor, regime in pairs]
     modes = []
-    for k, (factor, regime) in enumerate(zip(factors, regimes, strict=True)):
-        number = None if kinds.count(regime.kind) == 1 else kinds[: k + 1].count(regime.kind)
+    for k, (factor, regime) in enumerate(pairs):
+        number = None if stems.count(stems[k]) == 1 else stems[: k + 1].count(stems[k])
         modes.append(_mode(field, factor, regime, letters, number))
     return tuple(modes)
 
@@ -63,10 +64,7 @@ def _mode(
             frequency = perfect_root(field, _square(factor, regime))
             if frequency is not None:
                 return Mode(factor, regime, (), frequency)
-            stem = "kappa" if regime.kind == "hyperbolic" else "omega_d"
-            if regime.kind == "circular" and not factor.roots.centre:
-                stem = "omega_n"
-            return Mode(factor, regime, (letters.take(stem, number),))
+            return Mode(factor, regime, (letters.take(_stem(field, factor, regime), number),))
         case "decaying" if d <= len(DECAYING):
             return Mode(factor, regime, tuple(letters.take(s, number) for s in DECAYING[:d]))
         case "decaying":
@@ -84,6 +82,17 @@ def _mode(
             return Mode(factor, regime, tuple(map(letters.take, ("lambda", "sigma", "omega"))))
         case _:
             return Mode(factor, regime)
+
+
+def _stem(field: ParameterField, factor: Factor, regime: Regime) -> str:
+    """What is numbered where there are several: the letter of a pair that needs one, or a kind."""
+    if regime.kind not in ("circular", "hyperbolic"):
+        return regime.kind
+    if perfect_root(field, _square(factor, regime)) is not None:
+        return ""
+    if regime.kind == "hyperbolic":
+        return "kappa"
+    return "omega_d" if factor.roots.centre else "omega_n"
 
 
 def _square(factor: Factor, regime: Regime) -> Scalar:

@@ -17,7 +17,7 @@ from closedform.notation.latex.formula import formula
 from closedform.notation.plain import plain
 from closedform.notation.rational_formula import rational_formula
 from closedform.notation.shown import FormulaColumn
-from closedform.response.parametric.case import Case, WrittenQuantity
+from closedform.response.parametric.case import Case, Sought, WrittenQuantity
 from closedform.response.parametric.conditions import (
     WrittenComparison,
     written_comparison,
@@ -111,12 +111,15 @@ def _condition_latex(case: Case) -> str:
 
 
 def respond_in_cases(
-    model: ParametricModel, *, further: Callable[[Branch], ExponentialMatrix] | None = None
+    model: ParametricModel,
+    *,
+    further: Callable[[Branch], ExponentialMatrix] | None = None,
+    parted: Callable[[Branch], ExponentialMatrix | None] | None = None,
 ) -> ParametricResponse:
     """Return the exact response of a model with parameters, in every case.
 
     `further` makes other functions of the exponential of a branch, to be written with the
-    same names.
+    same names, `parted` some to be written mode by mode.
 
     Exact:   no floating-point number takes part.  Nothing is proved yet: see `verify`.
     Raises:  RootsUnknownError where it is not known how the roots of a factor lie.
@@ -139,10 +142,11 @@ def respond_in_cases(
             for factor, structure in zip(branch.spectrum.factors, branch.structures, strict=True)
         ]
         others = further(branch) if further is not None else None
+        apart = parted(branch) if parted is not None else None
         first: Case | None = None
         for regimes in product(*ways):
-            functions = (state, output, others)
-            case = written_case(model, branch, regimes, functions, len(cases), first)
+            sought = Sought(state, output, others, apart)
+            case = written_case(model, branch, regimes, sought, len(cases), first)
             if case is not None:
                 first = first or case
                 cases.append(case)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from typing import TypeVar
 
 from closedform.algebra.branches import Branch
 from closedform.algebra.domain import Comparison, ParameterDomain
@@ -13,11 +14,12 @@ from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import Regime
 from closedform.model.parametric import ParametricModel
-from closedform.notation.expression import Expression, operations
+from closedform.notation.expression import operations
 from closedform.notation.shown import FormulaColumn, FormulaMatrix
-from closedform.response.parametric.case import Case, WrittenQuantity
+from closedform.response.parametric.case import Case, Sought, WrittenQuantity
 from closedform.response.parametric.closed_form import closed_form, fronted_matrix
 from closedform.response.parametric.definitions import definition_formula
+from closedform.response.parametric.mode_parts import by_mode
 from closedform.response.parametric.mode_terms import terms_of
 from closedform.response.parametric.modes import Mode, modes_of, quantities_of
 from closedform.response.parametric.quantities import (
@@ -48,6 +50,8 @@ from closedform.response.parametric.terms import Term
 
 __all__ = ["written_case"]
 
+T = TypeVar("T")
+Table = tuple[tuple[T, ...], ...]
 Rows = tuple[tuple[Term, ...], ...]
 """The terms of many functions."""
 
@@ -64,13 +68,13 @@ def written_case(
     model: ParametricModel,
     branch: Branch,
     regimes: tuple[Regime, ...],
-    functions: tuple[ExponentialMatrix, ExponentialMatrix | None, ExponentialMatrix | None],
+    functions: Sought,
     number: int,
     like: Case | None = None,
 ) -> Case | None:
     """Return a branch in one regime, with its formulas in their shortest form.
 
-    `functions` are x(t), the outputs, and further ones.  `like` is a case of the same branch whose
+    `like` is a case of the same branch whose
     abbreviations are taken over, so that the regimes can be read side by side.  None if the
     conditions of the case contradict each other.
     """
@@ -85,7 +89,8 @@ def written_case(
     writing = _writing_field(model, modes, shortenings)
     quantities = [q for mode in modes for q in quantities_of(field, writing, mode)]
     lifted = _lifted(field, writing, domain, quantities, shortenings)
-    terms = _functions(field, writing, modes, branch.exponential, functions)
+    sought = (functions.state, functions.output, functions.further, functions.parted)
+    terms = _functions(field, writing, modes, branch.exponential, sought)
     below = _names_below(writing, terms)
     rewritings = sound_rewritings(
         lifted,
@@ -108,7 +113,8 @@ def written_case(
             (r, known[r.name, r.parameter]) for r in rewritings if (r.name, r.parameter) in known
         )
     results, entries = _shortest_under_equations(writing, domain, modes, terms, used, model.time)
-    formulas = [closed_form(writing, function, model.time) for function in results]
+    written_whole = len(results) - _entries(functions.parted)
+    formulas = [closed_form(writing, f, model.time) for f in results[:written_whole]]
     rows = [entries[i * n : (i + 1) * n] for i in range(n)]
     transition = tuple(
         tuple(closed_form(writing, function, model.time) for function in row) for row in rows
@@ -125,25 +131,31 @@ def written_case(
         domain,
         modes,
         tuple(written),
-        functions[0],
-        functions[1],
+        functions.state,
+        functions.output,
         FormulaColumn(formulas[:n]),
         FormulaColumn(formulas[n : n + m]),
         FormulaMatrix(transition),
         fronted_matrix(writing, rows, transition, model.time),
         tuple((r.name, r.parameter, extent) for r, extent in used),
-        functions[2],
-        _in_rows(formulas[n + m :], functions[2]),
+        functions.further,
+        _in_rows(formulas[n + m : written_whole], functions.further),
+        functions.parted,
+        _in_rows(
+            [by_mode(writing, f, model.time) for f in results[written_whole:]], functions.parted
+        ),
     )
 
 
-def _in_rows(
-    formulas: Sequence[Expression], function: ExponentialMatrix | None
-) -> tuple[tuple[Expression, ...], ...]:
+def _in_rows(entries: Sequence[T], function: ExponentialMatrix | None) -> Table[T]:
     if function is None:
         return ()
     rows, columns = function.shape
-    return tuple(tuple(formulas[i * columns : (i + 1) * columns]) for i in range(rows))
+    return tuple(tuple(entries[i * columns : (i + 1) * columns]) for i in range(rows))
+
+
+def _entries(function: ExponentialMatrix | None) -> int:
+    return 0 if function is None else int(function.shape[0] * function.shape[1])
 
 
 def _writing_field(

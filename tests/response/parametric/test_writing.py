@@ -8,7 +8,7 @@ from closedform.algebra.domain import Comparison
 from closedform.algebra.regimes import Regime
 from closedform.notation import plain
 from closedform.notation.expression import Expression, names_in
-from closedform.response.parametric.case import Case
+from closedform.response.parametric.case import Case, Sought
 from closedform.response.parametric.response import respond_in_cases
 from closedform.response.parametric.writing import written_case
 from tests.response.parametric.solved import MODELS, model, response_to
@@ -87,7 +87,7 @@ def test_a_regime_that_contradicts_the_domain_has_no_case() -> None:
     response = response_to("damped")
     branch = response.branches[0]
     never = Regime("circular", (Comparison(-response.model.field.symbol("m"), ">"),))
-    functions = (response.cases[0].state, response.cases[0].output)
+    functions = Sought(response.cases[0].state, response.cases[0].output)
     assert written_case(response.model, branch, (never,), functions, 0) is None
 
 
@@ -96,6 +96,6 @@ def test_a_case_is_written_the_same_each_time(name: str) -> None:
     response = response_to(name)
     first = response.cases[0]
     again = written_case(
-        response.model, first.branch, first.regimes, (first.state, first.output), 0
+        response.model, first.branch, first.regimes, Sought(first.state, first.output), 0
     )
     assert again == first
