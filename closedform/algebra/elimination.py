@@ -129,5 +129,5 @@ class _Work:
 
     def _is_number(self, element: Scalar) -> bool:
         if isinstance(self.field, ParameterField):
-            return self.field.constant(element) is not None
+            return not self.field.names_in(element)
         return True
