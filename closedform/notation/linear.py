@@ -22,7 +22,7 @@ from closedform.notation.expression import (
 )
 from closedform.notation.plain import plain
 
-__all__ = ["combination", "linear_combination"]
+__all__ = ["affine", "combination", "linear_combination"]
 
 T = TypeVar("T")
 
@@ -57,11 +57,22 @@ def combination(
 
     Raises:  NonlinearTermError, ConstantTermError, and what `arithmetic` raises.
     """
+    weights, constant = affine(expression, states, arithmetic, place)
+    if constant != arithmetic.number(Fraction(0)):
+        raise ConstantTermError(place, arithmetic.text(constant))
+    return weights
+
+
+def affine(
+    expression: Expression, names: Sequence[str], arithmetic: Arithmetic[T], place: Place
+) -> tuple[tuple[T, ...], T]:
+    """Return the weight of each name, in their order, and the constant that is added.
+
+    Raises:  NonlinearTermError, and what `arithmetic` raises.
+    """
     zero = arithmetic.number(Fraction(0))
-    result = _Walk(frozenset(states), arithmetic, place).linear(expression)
-    if result.constant != zero:
-        raise ConstantTermError(place, arithmetic.text(result.constant))
-    return tuple(result.weights.get(state, zero) for state in states)
+    result = _Walk(frozenset(names), arithmetic, place).linear(expression)
+    return tuple(result.weights.get(name, zero) for name in names), result.constant
 
 
 class _Walk(NamedTuple, Generic[T]):

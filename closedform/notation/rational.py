@@ -23,7 +23,7 @@ from closedform.notation.parametric_errors import (
 from closedform.notation.plain import plain
 from closedform.notation.rational_formula import rational_formula
 
-__all__ = ["difference", "rational_combination", "rational_value"]
+__all__ = ["difference", "field_arithmetic", "rational_combination", "rational_value"]
 
 MOST_TERMS = 100
 """Terms of a numerator or a denominator: common factors of larger ones take seconds to find."""
@@ -36,6 +36,13 @@ SIZE_LIMIT = (
     f"{MOST_DEGREE}, with numbers up to {MOST_BITS * 3 // 10} digits"
 )
 NOTHING: Mapping[str, Scalar] = {}
+
+
+def field_arithmetic(
+    field: ParameterField, *, meanings: Mapping[str, Scalar] = NOTHING
+) -> Arithmetic[Scalar]:
+    """Return the arithmetic of formulas whose names are parameters, or keys of `meanings`."""
+    return _Functions(field, meanings)
 
 
 def rational_value(
