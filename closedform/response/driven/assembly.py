@@ -12,18 +12,21 @@ from closedform.model.driven.generator import Tone
 from closedform.model.driven.model import DrivenModel
 from closedform.response.driven.functions import DrivenFunctions, Interval, Summand, Switch
 from closedform.response.driven.particular import (
-    Drive,
     at_instant,
     combined,
     constants_of,
+    drive_of,
     of_input,
     rebased,
+    selected,
 )
 
 __all__ = ["driven_functions", "rows_matrix"]
 
 Put = Callable[[Scalar], Scalar]
 """What puts the equations of a branch into an element."""
+Stays = Callable[[Tone], bool | None]
+"""Whether waves of a tone do not decay; None where this is not known."""
 
 
 @dataclass(frozen=True)
@@ -54,18 +57,20 @@ def driven_functions(
     *,
     put: Put = lambda element: element,
     relation: Scalar | None = None,
+    stays: Stays | None = None,
 ) -> DrivenFunctions:
     """Return the functions of the driven solution, as e^(Mt) of the stacked matrix gives them.
 
     `put` puts the equations of a branch of parameters into elements of the model, and
-    `relation` is the one that is kept.
+    `relation` is the one that is kept.  With `stays`, which is given for a stable model
+    alone, the last interval is told apart into what stays and what decays.
 
     Raises:  ValueError for a model whose initial values are not given at its start, or with a
              repeating input: these are put together elsewhere.
     """
     if model.initial is None or any(i.signal.repeat for i in model.inputs):
         raise ValueError("only initial values and inputs that do not repeat are put together here")
-    return _Assembly(model, exponential, put, relation).functions()
+    return _Assembly(model, exponential, put, relation).functions(stays)
 
 
 def rows_matrix(model: DrivenModel, put: Put = lambda element: element) -> FieldMatrix:
@@ -119,21 +124,12 @@ class _Assembly:
         self.size = exponential.shape[0]
         self.rows = rows_matrix(model, put)
         self.top = _states_of(self.base, self.n, self.size)
-        tones = model.generator.tones if model.generator is not None else ()
-        self.drive = Drive(
-            self.base,
-            tuple(
-                Tone(put(tone.rate), put(tone.frequency), tone.size)
-                for of_input in tones
-                for tone in of_input
-            ),
-            relation,
-        )
+        self.drive = drive_of(model, put, relation)
         self.instants = (put(model.start), *(put(a) for a in model.timeline))
         self.on = tuple(self._waves_on())
         self.columns = _Columns()
 
-    def functions(self) -> DrivenFunctions:
+    def functions(self, stays: Stays | None) -> DrivenFunctions:
         last = len(self.instants) - 1
         initial = self.base.matrix([[self.put(x)] for x in self.model.initial or ()])
         free = [self._free(self.instants[0], ONE(self.base), initial)]
@@ -143,10 +139,8 @@ class _Assembly:
             parts = self._sustained(k)
             parts += [p for j in range(k + 1) for p in self._started(j, jumps[j])]
             driven.append(parts)
-        intervals = tuple(
-            self._interval(k, self._merged([*parts, *free], self.instants[k]))
-            for k, parts in enumerate(driven)
-        )
+        whole = [self._merged([*parts, *free], self.instants[k]) for k, parts in enumerate(driven)]
+        intervals = tuple(self._interval(k, parts) for k, parts in enumerate(whole))
         forced = tuple(
             self._interval(k, self._merged(parts, self.instants[k]))
             for k, parts in enumerate(driven)
@@ -157,6 +151,7 @@ class _Assembly:
             for k in range(last + 1)
         )
         free_part = self._summands(self._merged(free, self.instants[0]))
+        steady, transient = (None, None) if stays is None else self._told_apart(whole[last], stays)
         return DrivenFunctions(
             self._all_columns(),
             intervals,
@@ -166,6 +161,8 @@ class _Assembly:
             sustained[last].summands,
             sustained,
             tuple(jumps),
+            steady,
+            transient,
         )
 
     # What each part is made of
@@ -265,6 +262,25 @@ class _Assembly:
             for (origin, constant), functions in found.items()
         ]
         return [part for part in merged if not _is_zero(part.function)]
+
+    def _told_apart(
+        self, parts: Sequence[_Part], stays: Stays
+    ) -> tuple[tuple[Summand, ...] | None, tuple[Summand, ...] | None]:
+        """What stays and what decays of the parts of a stable model; None if this is not known."""
+        steady, transient = [], []
+        for part in parts:
+            fates = []
+            for term in part.function.terms:
+                tone = self.drive.tone_of(term.factor.p)
+                fate = False if tone is None else stays(tone)
+                if fate is None and any(not residue.is_zero for residue in term.residues):
+                    return None, None
+                fates.append(bool(fate))
+            steady.append(replace(part, function=selected(part.function, fates)))
+            rest = selected(part.function, [not fate for fate in fates])
+            transient.append(replace(part, function=rest))
+        found = [[p for p in ps if not _is_zero(p.function)] for ps in (steady, transient)]
+        return self._summands(found[0]), self._summands(found[1])
 
     def _summands(self, parts: Sequence[_Part]) -> tuple[Summand, ...]:
         return tuple(

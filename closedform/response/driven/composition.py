@@ -25,7 +25,16 @@ from closedform.notation.rational_formula import rational_formula
 from closedform.notation.terms import negated, opened, sum_of, surd_formula
 from closedform.response.driven.functions import Interval, Summand, Switch
 
-__all__ = ["constant_formula", "element_formula", "interval_formula", "shifted", "step_formula"]
+__all__ = [
+    "constant_formula",
+    "element_formula",
+    "interval_formula",
+    "renamed",
+    "scaled",
+    "shifted",
+    "step_formula",
+    "summed",
+]
 
 Rows = tuple[tuple[Expression, ...], ...]
 
@@ -54,12 +63,21 @@ def shifted(formula: Expression, time: str, origin: Expression) -> Expression:
     """
     if origin == ZERO:
         return formula
-    later = sum_of([Name(time), negated(origin)])
+    return _put(formula, time, sum_of([Name(time), negated(origin)]), origin)
 
+
+def renamed(formula: Expression, old: str, new: str) -> Expression:
+    """Return a formula with one name in the place of another."""
+    return _put(formula, old, Name(new), None)
+
+
+def _put(
+    formula: Expression, name: str, value: Expression, origin: Expression | None
+) -> Expression:
     def put(node: Expression) -> Expression:
         match node:
             case Name(text):
-                return later if text == time else node
+                return value if text == name else node
             case Number():
                 return node
             case Negation(operand):
@@ -67,7 +85,8 @@ def shifted(formula: Expression, time: str, origin: Expression) -> Expression:
             case Sum(terms):
                 return sum_of([put(term) for term in terms])
             case Product(factors):
-                return _turned(node, time, origin) or product(put(f) for f in factors)
+                turned = None if origin is None else _turned(node, name, origin)
+                return turned or product(put(f) for f in factors)
             case Quotient(above, below):
                 return Quotient(put(above), put(below))
             case Power(base, exponent):
@@ -101,7 +120,7 @@ def interval_formula(
     field: BaseField, columns: Rows, row: int, interval: Interval, time: str
 ) -> Expression:
     """Return one row of the solution in one interval."""
-    return _total(field, columns, row, interval.summands, time)
+    return summed(field, columns, row, interval.summands, time)
 
 
 def step_formula(
@@ -113,24 +132,25 @@ def step_formula(
     time: str,
 ) -> Expression:
     """Return one row of the solution for all times, with step(t - a) for what joins at a."""
-    terms = [_total(field, columns, row, first.summands, time)]
+    terms = [summed(field, columns, row, first.summands, time)]
     for switch in switches:
-        joined = _total(field, columns, row, switch.summands, time)
+        joined = summed(field, columns, row, switch.summands, time)
         if joined == ZERO:
             continue
         at = sum_of([Name(time), negated(element_formula(field, switch.at))])
-        terms.append(_times(Call("step", at), joined))
+        terms.append(scaled(Call("step", at), joined))
     kept = [term for term in terms if term != ZERO]
     return opened(sum_of(kept)) if kept else ZERO
 
 
-def _total(
+def summed(
     field: BaseField,
     columns: Rows,
     row: int,
     summands: Sequence[Summand],
     time: str,
 ) -> Expression:
+    """Return one row of a sum of columns, each shifted to its origin."""
     terms = []
     for summand in summands:
         formula = columns[row][summand.place]
@@ -138,11 +158,17 @@ def _total(
             continue
         moved = shifted(formula, time, element_formula(field, summand.origin))
         constant = constant_formula(field, summand.constant)
-        terms.append(moved if constant is None else _times(constant, moved))
+        terms.append(moved if constant is None else scaled(constant, moved))
     return opened(sum_of(terms)) if terms else ZERO
 
 
-def _times(factor: Expression, formula: Expression) -> Expression:
+def scaled(factor: Expression, formula: Expression) -> Expression:
+    """Return factor · formula, its sign outside and a denominator below both."""
+    if isinstance(formula, Quotient):
+        above = scaled(factor, formula.numerator)
+        if isinstance(above, Negation):
+            return Negation(Quotient(above.operand, formula.denominator))
+        return Quotient(above, formula.denominator)
     if isinstance(formula, Negation):
         return Negation(product((factor, formula.operand)))
     if isinstance(formula, Sum) and all(isinstance(t, Negation) for t in formula.terms):

@@ -60,7 +60,8 @@ class DrivenFunctions:
     `free` is the response to the initial values alone, `forced` the rest, in the same
     intervals.  `held` are the parts of the last interval that the waves still on sustain;
     `sustained` are these in each interval.  `jumps` are h_j of all instants, n x 1, the
-    initial values left out of the first.
+    initial values left out of the first.  `steady` and `transient` add up to the last
+    interval: what does not decay, and what does; None unless the model is stable.
     """
 
     columns: ExponentialMatrix
@@ -71,3 +72,5 @@ class DrivenFunctions:
     held: tuple[Summand, ...]
     sustained: tuple[Interval, ...] = ()
     jumps: tuple[ConstantColumns, ...] = ()
+    steady: tuple[Summand, ...] | None = None
+    transient: tuple[Summand, ...] | None = None

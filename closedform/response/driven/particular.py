@@ -8,7 +8,7 @@ No eigenvalue has to differ from any other, so that resonance needs no rule of i
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass
 from math import factorial
 
@@ -18,8 +18,19 @@ from closedform.algebra.parametric_spectrum import vanishes_under
 from closedform.algebra.root_matrix import RootMatrix
 from closedform.algebra.waves import Constant, ConstantColumns, gathered_columns
 from closedform.model.driven.generator import Tone
+from closedform.model.driven.model import DrivenModel
 
-__all__ = ["Drive", "at_instant", "combined", "constants_of", "of_input", "rebased"]
+__all__ = [
+    "Drive",
+    "at_instant",
+    "beside",
+    "combined",
+    "constants_of",
+    "drive_of",
+    "of_input",
+    "rebased",
+    "selected",
+]
 
 
 @dataclass(frozen=True)
@@ -44,9 +55,38 @@ class Drive:
         return all(vanishes_under(c, self.relation) for c in factor.rem(p).to_list())
 
 
+def drive_of(
+    model: DrivenModel, put: Callable[[Scalar], Scalar], relation: Scalar | None = None
+) -> Drive:
+    """Return the tones of a model, with the equations of a branch put in."""
+    tones = model.generator.tones if model.generator is not None else ()
+    return Drive(
+        model.field,
+        tuple(
+            Tone(put(tone.rate), put(tone.frequency), tone.size)
+            for of_one in tones
+            for tone in of_one
+        ),
+        relation,
+    )
+
+
 def of_input(drive: Drive, function: ExponentialMatrix) -> ExponentialMatrix:
     """Return the terms of a function that belong to eigenvalues of the generator."""
-    return _kept(function, [drive.tone_of(term.factor.p) is not None for term in function.terms])
+    return selected(function, [drive.tone_of(term.factor.p) is not None for term in function.terms])
+
+
+def selected(function: ExponentialMatrix, keep: Sequence[bool]) -> ExponentialMatrix:
+    """Return a function with the terms that are not kept made zero: the factors stay in place."""
+    zero = function.field.domain.zero
+    gone = function.field.polynomial([zero])
+    return ExponentialMatrix(
+        function.field,
+        tuple(
+            term if kept else ModalTerm(term.factor, tuple(r.scaled(gone) for r in term.residues))
+            for term, kept in zip(function.terms, keep, strict=True)
+        ),
+    )
 
 
 def combined(parts: Iterable[tuple[int | Scalar, ExponentialMatrix]]) -> ExponentialMatrix:
@@ -68,6 +108,17 @@ def combined(parts: Iterable[tuple[int | Scalar, ExponentialMatrix]]) -> Exponen
             residues.append(total)
         terms.append(ModalTerm(term.factor, tuple(residues)))
     return ExponentialMatrix(field, tuple(terms))
+
+
+def beside(functions: Sequence[ExponentialMatrix]) -> ExponentialMatrix:
+    """Return the matrix of the columns of functions with the same factors, side by side."""
+    field, widths = functions[0].field, [f.shape[1] for f in functions]
+    c, first, parts = sum(widths), 0, []
+    for function, width in zip(functions, widths, strict=True):
+        place = [[int(k == first + i) for k in range(c)] for i in range(width)]
+        parts.append(function.times(field.matrix([list(map(field.scalar, row)) for row in place])))
+        first += width
+    return combined((1, part) for part in parts)
 
 
 def at_instant(drive: Drive, function: ExponentialMatrix, d: Scalar) -> ConstantColumns:
@@ -100,7 +151,7 @@ def at_instant(drive: Drive, function: ExponentialMatrix, d: Scalar) -> Constant
 
 def constants_of(function: ExponentialMatrix, *, kept: bool = True) -> ExponentialMatrix:
     """Return the terms of a function that belong to the eigenvalue 0; the others if not `kept`."""
-    return _kept(function, [_is_zero_root(term) == kept for term in function.terms])
+    return selected(function, [_is_zero_root(term) == kept for term in function.terms])
 
 
 def rebased(
@@ -196,16 +247,3 @@ def _polynomial_at(field: BaseField, term: ModalTerm, d: Scalar) -> list[FieldMa
         weight = d**j / field.domain.convert(factorial(j))
         total = total + residue.scaled(field.polynomial([weight]))
     return list(total.coefficients)
-
-
-def _kept(function: ExponentialMatrix, keep: Sequence[bool]) -> ExponentialMatrix:
-    """The function with the terms that are not kept made zero: the factors stay in place."""
-    zero = function.field.domain.zero
-    gone = function.field.polynomial([zero])
-    return ExponentialMatrix(
-        function.field,
-        tuple(
-            term if kept else ModalTerm(term.factor, tuple(r.scaled(gone) for r in term.residues))
-            for term, kept in zip(function.terms, keep, strict=True)
-        ),
-    )

@@ -2,17 +2,22 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 
 from closedform.algebra.branches import Branch
+from closedform.algebra.domain import ParameterDomain
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import Scalar
+from closedform.algebra.hurwitz import sign_oracle
 from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.sign_argument import SignArgument
 from closedform.model.driven.model import DrivenModel
 from closedform.model.parametric import ParametricModel
 from closedform.notation.expression import Expression
 from closedform.notation.plain import plain
+from closedform.response.by_mode import ByMode
 from closedform.response.driven.assembly import driven_functions
 from closedform.response.driven.composition import (
     element_formula,
@@ -20,6 +25,16 @@ from closedform.response.driven.composition import (
     step_formula,
 )
 from closedform.response.driven.functions import DrivenFunctions, Interval, Summand
+from closedform.response.driven.particular import Drive, beside, drive_of
+from closedform.response.driven.period_formulas import PeriodicSolution, periodic_solution
+from closedform.response.driven.periodic import (
+    PeriodFunctions,
+    period_functions,
+    repeating,
+    without_repeats,
+)
+from closedform.response.driven.stability import Stability, stability_of
+from closedform.response.driven.steady import SteadyState, stays, steady_state
 from closedform.response.parametric.case import Case
 from closedform.response.parametric.response import ParametricResponse, respond_in_cases
 from closedform.response.response import Response, respond
@@ -34,18 +49,44 @@ class DrivenSolution:
     """The driven solution in one case (the only one, without parameters).
 
     `columns` are the formulas of the columns of `functions`, r x c; `case` is that of the
-    stacked response, None without parameters.
+    stacked response, None without parameters.  What inputs that repeat add to it, from rest,
+    is in `periodic`, made of `periods`.  `stability` is that of the model's own matrix.
     """
 
     model: DrivenModel
     functions: DrivenFunctions
     columns: Rows
     case: Case | None
+    stability: Stability
+    periodic: tuple[PeriodicSolution, ...] = ()
+    periods: tuple[PeriodFunctions, ...] = ()
 
     @property
     def condition(self) -> str:
         """The conditions of the case in plain notation; "true" where there is none."""
         return "true" if self.case is None else self.case.condition
+
+    @cached_property
+    def drive(self) -> Drive:
+        """The tones of the inputs, with the equations of the case put in."""
+        branch = None if self.case is None else self.case.branch
+        return drive_of(self.model, self.put, None if branch is None else branch.relation)
+
+    def put(self, element: Scalar) -> Scalar:
+        """Return an element with the equations of the case put in."""
+        if self.case is None or not isinstance(self.model.field, ParameterField):
+            return element
+        return self.model.field.substituted(element, self.case.branch.values)
+
+    def sign_of(self, element: Scalar) -> SignArgument:
+        """Return the sign that an element has in the case, and why."""
+        domain = None if self.case is None else self.case.domain
+        return sign_oracle(self.model.field, domain)(element)
+
+    @cached_property
+    def steady_state(self) -> SteadyState | None:
+        """The last interval in its steady and its transient part, for a stable model."""
+        return steady_state(self.model, self.functions, self.columns, self.drive, self.sign_of)
 
     @cached_property
     def solution(self) -> tuple[Expression, ...]:
@@ -124,19 +165,23 @@ def respond_driven(model: DrivenModel) -> DrivenResponse:
     """
     if isinstance(model.stacked, ParametricModel):
         return _in_cases(model, model.stacked)
-    found: list[DrivenFunctions] = []
+    found: list[_Sought] = []
 
     def further(exponential: ExponentialMatrix) -> ExponentialMatrix:
-        found.append(driven_functions(model, exponential))
+        found.append(_sought(model, exponential))
         return found[0].columns
 
-    response = respond(model.stacked, further=further)
-    columns = response.closed_forms.further
-    return DrivenResponse(model, response, (DrivenSolution(model, found[0], columns, None),))
+    def parted(_: ExponentialMatrix) -> ExponentialMatrix | None:
+        return found[0].parted
+
+    response = respond(model.stacked, further=further, parted=parted)
+    forms = response.closed_forms
+    solution = _solution(model, found[0], forms.further, forms.by_mode, None)
+    return DrivenResponse(model, response, (solution,))
 
 
 def _in_cases(model: DrivenModel, stacked: ParametricModel) -> DrivenResponse:
-    found: dict[int, DrivenFunctions] = {}
+    found: dict[int, _Sought] = {}
 
     def further(branch: Branch) -> ExponentialMatrix:
         field: ParameterField = stacked.field
@@ -144,14 +189,83 @@ def _in_cases(model: DrivenModel, stacked: ParametricModel) -> DrivenResponse:
         def put(element: Scalar) -> Scalar:
             return field.substituted(element, branch.values)
 
-        found[branch.number] = driven_functions(
-            model, branch.exponential, put=put, relation=branch.relation
+        found[branch.number] = _sought(
+            model, branch.exponential, put=put, relation=branch.relation, domain=branch.domain
         )
         return found[branch.number].columns
 
-    response = respond_in_cases(stacked, further=further)
+    def parted(branch: Branch) -> ExponentialMatrix | None:
+        return found[branch.number].parted
+
+    response = respond_in_cases(stacked, further=further, parted=parted)
     solutions = tuple(
-        DrivenSolution(model, found[case.branch.number], case.further_formulas, case)
+        _solution(model, found[case.branch.number], case.further_formulas, case.by_mode, case)
         for case in response.cases
     )
-    return DrivenResponse(model, response, solutions)
+    return DrivenResponse(model, response, tuple(solutions))
+
+
+@dataclass(frozen=True)
+class _Sought:
+    """The functions of a solution: those without repeats, then those of each way to repeat."""
+
+    base: DrivenFunctions
+    periods: tuple[PeriodFunctions, ...]
+    stability: Stability
+
+    @property
+    def columns(self) -> ExponentialMatrix:
+        return beside([self.base.columns, *(p.single.columns for p in self.periods)])
+
+    @property
+    def parted(self) -> ExponentialMatrix | None:
+        return beside([p.parted for p in self.periods]) if self.periods else None
+
+
+def _sought(
+    model: DrivenModel,
+    exponential: ExponentialMatrix,
+    *,
+    put: Callable[[Scalar], Scalar] = lambda element: element,
+    relation: Scalar | None = None,
+    domain: ParameterDomain | None = None,
+) -> _Sought:
+    stability = stability_of(model, domain, put)
+    tells = stability.verdict == "stable" and not repeating(model)
+    base = driven_functions(
+        without_repeats(model),
+        exponential,
+        put=put,
+        relation=relation,
+        stays=stays(sign_oracle(model.field, domain)) if tells else None,
+    )
+    periods = tuple(
+        period_functions(model, repeat, exponential, put=put, relation=relation)
+        for repeat in repeating(model)
+    )
+    return _Sought(base, periods, stability)
+
+
+def _solution(
+    model: DrivenModel, sought: _Sought, columns: Rows, by_mode: ByMode, case: Case | None
+) -> DrivenSolution:
+    """The solution with its formulas, of which each part has its own columns."""
+    width = sought.base.columns.shape[1]
+    first, first_parted, periodic = width, 0, []
+    for functions in sought.periods:
+        last = first + functions.single.columns.shape[1]
+        last_parted = first_parted + functions.parted.shape[1]
+        periodic.append(
+            periodic_solution(
+                model,
+                functions,
+                tuple(row[first:last] for row in columns),
+                tuple(row[first_parted:last_parted] for row in by_mode),
+                decays=False,
+            )
+        )
+        first, first_parted = last, last_parted
+    own = tuple(row[:width] for row in columns)
+    return DrivenSolution(
+        model, sought.base, own, case, sought.stability, tuple(periodic), sought.periods
+    )
