@@ -24,6 +24,7 @@ __all__ = ["enclose"]
 def enclose(expression: Expression, values: Mapping[str, arb]) -> arb:
     """Return a ball that contains the value of a formula, at flint's current precision.
 
+    A unit step is 1 from the instant 0 on; a ball that does not tell the side is [0, 1].
     Where the formula has no real value (a division by zero, the root of a negative number)
     or a ball is too wide to tell, the result is a ball that is not finite.
 
@@ -74,6 +75,14 @@ def _integer_power(base: arb, exponent: int) -> arb:
     return result
 
 
+def _unit_step(argument: arb) -> arb:
+    if not argument.is_finite():
+        return arb.nan()
+    if argument >= 0:
+        return arb(1)
+    return arb(0) if argument < 0 else arb(0.5, 0.5)
+
+
 def _apply(function: str, argument: arb) -> arb:
     match function:
         case "exp":
@@ -88,5 +97,7 @@ def _apply(function: str, argument: arb) -> arb:
             return argument.cosh()
         case "sqrt":
             return argument.sqrt()
+        case "step":
+            return _unit_step(argument)
         case _:
             raise ValueError(f"there is no function {function}")

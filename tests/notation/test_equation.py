@@ -19,7 +19,7 @@ from closedform.notation.errors import (
     NotFiniteError,
     UndeclaredNameError,
 )
-from closedform.notation.expression import FUNCTIONS, SIGNALS, Call, Expression, Name
+from closedform.notation.expression import FUNCTIONS, SIGNALS, Call, Expression, Name, operations
 from closedform.notation.jets import found_jets, jet_of, spelled
 from closedform.notation.plain import plain
 from closedform.notation.reader import LONGEST, read_formula
@@ -290,3 +290,18 @@ def test_repeated_openings_are_soon_refused(piece: str) -> None:
     text = piece * (LONGEST // 10) + " = 0"
     with pytest.raises(FormulaError):
         read_open(text)
+
+
+COUNTED = [
+    ("m*x'' + c*x'", 3),
+    ("u(t - 2)", 2),
+    ("3*step(t)", 2),
+    ("-x'", 1),
+]
+
+
+@pytest.mark.parametrize(("text", "count"), COUNTED)
+def test_a_jet_costs_no_operation_and_a_call_one(text: str, count: int) -> None:
+    formula, _ = read(f"{text} = 0")
+    assert operations(formula) == count
+    assert plain(formula) == text

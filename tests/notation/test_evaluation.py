@@ -8,6 +8,7 @@ import pytest
 from flint import arb, ctx
 from hypothesis import given
 
+from closedform.notation.equation import read_signal_formula
 from closedform.notation.evaluation import enclose
 from closedform.notation.expression import Call, Expression, Name, Number, Power
 from tests.notation.formulas import rational_formulas, rational_value, read
@@ -74,3 +75,27 @@ def test_the_power_of_a_ball_around_zero_is_finite() -> None:
     squared = enclose(Power(Name("x"), Number(Fraction(2))), {"x": arb("0 +/- 1e-10")})
     assert squared.is_finite()
     assert squared.contains(0)
+
+
+STEPS = [("0", 1, 1), ("1e-9", 1, 1), ("-1e-9", 0, 0), ("0 +/- 1", 0, 1), ("1 +/- 0.5", 1, 1)]
+
+
+@pytest.mark.parametrize(("ball", "least", "most"), STEPS)
+def test_a_unit_step_is_certain_where_the_sign_is(ball: str, least: int, most: int) -> None:
+    step = enclose(Call("step", Name("t")), {"t": arb(ball)})
+    assert step.contains(least)
+    assert step.contains(most)
+    assert (step.rad() > 0) is (least != most)
+    assert step < 2
+    assert step > -1
+
+
+def test_a_step_of_nothing_is_not_finite() -> None:
+    assert not enclose(Call("step", Name("t")), {"t": arb.nan()}).is_finite()
+
+
+def test_a_signal_is_switched_by_its_step() -> None:
+    signal = read_signal_formula("2*step(t - 1)*t", time="t", constants=frozenset())
+    assert enclose(signal, {"t": arb("0.5")}) == 0
+    assert enclose(signal, {"t": arb(1)}) == 2
+    assert enclose(signal, {"t": arb(3)}) == 6

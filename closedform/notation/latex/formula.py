@@ -3,6 +3,7 @@ r"""Formulas as LaTeX, with their widths: pure functions from `Expression` to `B
 Typography follows ISO 80000-2: variables italic; numbers, the base e, the unit i and
 function names upright.  ``exp(x)`` is \mathrm{e}^{x}; a quotient is a fraction, slashed
 in exponents; factors stand side by side, with a dot only where a number follows.
+``step(x)`` is \varepsilon(x), ``delta(x)`` is \delta(x), and an input keeps its name.
 """
 
 from __future__ import annotations
@@ -23,13 +24,15 @@ from closedform.notation.expression import (
     product,
 )
 from closedform.notation.latex.box import BINARY, Box, Style, bracketed, joined, plain
-from closedform.notation.latex.names import is_long, name_box
+from closedform.notation.latex.names import is_long, is_raised, name_box
 
 __all__ = ["factors_of", "formula", "front_glue", "signed", "terms_of"]
 
 DIGIT = 0.515
 HEAD = {"sin": 1.1, "cos": 1.2, "sinh": 1.65, "cosh": 1.78}
 """Widths of function names; the thin space before them is counted with the factors."""
+OPERATORS = frozenset({*HEAD, "exp", "sqrt"})
+"""Functions that TeX spaces itself, or that are set as no name in front of a bracket."""
 
 
 def formula(expression: Expression, style: Style = Style.DISPLAY) -> Box:
@@ -166,7 +169,9 @@ def _power(base: Expression, exponent: Expression, style: Style) -> Box:
             inside = bracketed(_sum_level(argument, style), style)
             head = plain(rf"\{function}^{{{raised.latex}}}", HEAD[function], style)
             return joined(Box(head.latex, head.width + raised.width), inside)
-        case ((Name() | Call("sqrt", _)), _):
+        case Name(text), _ if not is_raised(text):
+            bottom = _factor(base, style)
+        case Call("sqrt", _), _:
             bottom = _factor(base, style)
         case Number(value), _ if value.denominator == 1:
             bottom = _factor(base, style)
@@ -190,10 +195,19 @@ def _call(function: str, argument: Expression, style: Style, *, bare: bool) -> B
             inside.width + (1.08 if inside.height else 0.92) * style.scale,
             min(inside.height, 2),
         )
+    if function not in HEAD:
+        return joined(_signal_head(function, style), bracketed(inside, style))
     head = plain(rf"\{function}", HEAD[function] + (0.2 if bare else 0.0), style)
     if bare:
         return joined(head, inside, glue=" ")
     return joined(head, bracketed(inside, style))
+
+
+def _signal_head(function: str, style: Style) -> Box:
+    """Return the letter of the unit step or impulse, or the name of an input."""
+    if function == "step":
+        return plain(r"\varepsilon", 0.52, style)
+    return name_box(function, style)
 
 
 def _product(expression: Product, style: Style) -> Box:
@@ -221,7 +235,8 @@ def _one_of(factor: Expression, following: Expression | None, style: Style) -> B
     """Return a factor; a function of a lone name has no brackets if nothing can join it."""
     match factor:
         case Call("sin" | "cos" | "sinh" | "cosh" as function, Name() as argument) if (
-            following is None or (isinstance(following, Call) and following.function != "sqrt")
+            following is None
+            or (isinstance(following, Call) and following.function in OPERATORS - {"sqrt"})
         ):
             return _call(function, argument, style, bare=True)
     return _factor(factor, style)
@@ -233,7 +248,9 @@ def front_glue(before: Expression, after: Expression, left: Box, right: Box) -> 
     if right.latex[0].isdigit() or (both_numbers and not _is_root(after)):
         return r" \cdot ", 0.75
     if isinstance(before, Number):
-        return (r"\,", 0.17) if isinstance(after, Name) and is_long(after.text) else ("", 0.0)
+        return (r"\,", 0.17) if _is_word(after) else ("", 0.0)
+    if isinstance(after, Call) and after.function not in OPERATORS:
+        return r"\,", 0.17
     if isinstance(after, Call) and after.function == "exp":
         return r"\,", 0.17
     if isinstance(before, Call) and left.latex.endswith(")"):
@@ -247,6 +264,15 @@ def front_glue(before: Expression, after: Expression, left: Box, right: Box) -> 
     space = 0.2 if isinstance(before, Call) or isinstance(after, Call) else 0.0
     # a letter after a command name would become part of it: \omega x
     return (" " if left.latex[-1].isalpha() and right.latex[0].isalpha() else ""), space
+
+
+def _is_word(expression: Expression) -> bool:
+    match expression:
+        case Name(text):
+            return is_long(text)
+        case Call(function, _) if function not in OPERATORS:
+            return function != "step" and is_long(function)
+    return False
 
 
 def _is_root(expression: Expression) -> bool:

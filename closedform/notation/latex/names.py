@@ -4,11 +4,15 @@ A name is a base and indices.  Indices follow underscores, and digits at the end
 base are one too: ``k12`` is k with the index 12.  Single letters and Greek letters are
 italic, longer names and letters in indices upright (ISO 80000-2: an index that is not
 itself a quantity is upright).
+
+Primes, or a last index dot, ddot, dot3, say how often something is derived with respect to
+the time: ``x1''`` and ``x1_ddot`` are \ddot{x}_{1}, from the fourth time on x_{1}^{(4)}.
 """
 
 from __future__ import annotations
 
 import re
+from typing import NamedTuple
 
 from closedform.notation.latex.box import Box, Style, plain
 from closedform.notation.latex.escape import escaped
@@ -16,7 +20,9 @@ from closedform.notation.latex.escape import escaped
 __all__ = [
     "GREEK",
     "IMAGINARY",
+    "dot_ending",
     "is_long",
+    "is_raised",
     "letter_box",
     "name_box",
     "printed_key",
@@ -49,8 +55,11 @@ WIDTHS = {letter: width for width, letters in UP_TO for letter in letters.split(
 
 WIDEST = 1.08
 NAME = re.compile(
-    r"(?P<base>[A-Za-z]+)(?P<digits>([0-9][A-Za-z0-9]*)?)(?P<rest>(_[A-Za-z0-9]+)*)(?P<primes>'*)"
+    r"(?P<base>[A-Za-z]+)(?P<digits>([0-9][A-Za-z0-9]*)?)(?P<rest>(_[A-Za-z0-9]+)*?)"
+    r"(_(?P<dots>d{0,3})dot|_dot(?P<order>[1-9][0-9]?))?(?P<primes>'*)"
 )
+DOTS = (r"\dot", r"\ddot", r"\dddot")
+"""Accents of the first derivatives with respect to the time; later ones have a number."""
 
 
 def _width(word: str) -> float:
@@ -86,14 +95,25 @@ def letter_box(text: str, style: Style = Style.DISPLAY, *, bold: bool = False) -
     return plain(rf"\boldsymbol{{{inner}}}" if bold else inner, width, style)
 
 
-def _parts(text: str) -> tuple[str, tuple[str, ...], str] | None:
-    """Return base, indices and primes of a name as they are printed; None for other text."""
+class _Parts(NamedTuple):
+    """What a name is printed as: base, indices, and the order of its derivative."""
+
+    base: str
+    indices: tuple[str, ...]
+    order: int
+
+
+def _parts(text: str) -> _Parts | None:
+    """Return the parts of a name as they are printed; None for other text."""
     match = NAME.fullmatch(text)
     if match is None:
         return None
     words = [match["base"], match["digits"], *match["rest"].split("_")]
     base, *indices = (OTHER_SPELLINGS.get(word, word) for word in words if word)
-    return base, tuple(indices), match["primes"]
+    order = len(match["primes"]) + int(match["order"] or 0)
+    if match["dots"] is not None:
+        order += len(match["dots"]) + 1
+    return _Parts(base, tuple(indices), order)
 
 
 def printed_key(text: str) -> str:
@@ -101,22 +121,36 @@ def printed_key(text: str) -> str:
 
     For a name it is the name's plainest spelling, an underscore before each index.
 
-    >>> printed_key("x1"), printed_key("x_1"), printed_key("lamda")
-    ('x_1', 'x_1', 'lambda')
+    >>> printed_key("x1"), printed_key("x_1"), printed_key("lamda"), printed_key("x1'")
+    ('x_1', 'x_1', 'lambda', 'x_1_dot')
     """
     if text == IMAGINARY:
         return text
     parts = _parts(text)
     if parts is None:
         return letter_box(text).latex  # its backslash keeps it apart from every name
-    base, indices, primes = parts
-    return "_".join([base, *indices]) + primes
+    return "_".join([parts.base, *parts.indices]) + dot_ending(parts.order)
+
+
+def dot_ending(order: int) -> str:
+    """Return what is put behind a name to name its derivative of an order.
+
+    >>> [dot_ending(order) for order in range(5)]
+    ['', '_dot', '_ddot', '_dot3', '_dot4']
+    """
+    return ("", "_dot", "_ddot")[order] if order < 3 else f"_dot{order}"
+
+
+def is_raised(text: str) -> bool:
+    """Say whether a name is printed with something above it on the right: x^{(4)}."""
+    parts = _parts(text)
+    return parts is not None and parts.order > len(DOTS)
 
 
 def is_long(text: str) -> bool:
     """Say whether the name's base is set upright as a word, so that it needs space around."""
     parts = _parts(text)
-    base = parts[0] if parts else text
+    base = parts.base if parts else text
     return len(base) > 1 and base not in GREEK and base != IMAGINARY
 
 
@@ -130,6 +164,12 @@ def name_box(text: str, style: Style = Style.DISPLAY, extra: tuple[str, ...] = (
     parts = _parts(text)
     if parts is None:
         return subscripted(letter_box(text, style), extra, style)
-    base, indices, primes = parts
-    box = subscripted(letter_box(base, style), (*indices, *filter(None, extra)), style)
-    return Box(box.latex + primes, box.width + 0.3 * len(primes) * style.scale, box.height)
+    box = letter_box(parts.base, style)
+    if 0 < parts.order <= len(DOTS):
+        box = Box(f"{DOTS[parts.order - 1]}{{{box.latex}}}", box.width, box.height)
+    box = subscripted(box, (*parts.indices, *filter(None, extra)), style)
+    if parts.order <= len(DOTS):
+        return box
+    raised = 0.8 + 0.52 * len(str(parts.order))
+    width = box.width + raised * style.script.scale
+    return Box(f"{box.latex}^{{({parts.order})}}", width, box.height)

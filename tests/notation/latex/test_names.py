@@ -4,7 +4,14 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from closedform.notation.latex.names import IMAGINARY, is_long, name_box, printed_key
+from closedform.notation.latex.names import (
+    IMAGINARY,
+    dot_ending,
+    is_long,
+    is_raised,
+    name_box,
+    printed_key,
+)
 
 CASES = [
     ("x", "x"),
@@ -24,8 +31,19 @@ CASES = [
     ("mass", r"\mathrm{mass}"),
     ("mass2", r"\mathrm{mass}_{2}"),
     ("k1a", r"k_{\mathrm{1a}}"),
-    ("x'", "x'"),
-    ("x_1''", "x_{1}''"),
+    ("x'", r"\dot{x}"),
+    ("x_1''", r"\ddot{x}_{1}"),
+    ("x1_ddot", r"\ddot{x}_{1}"),
+    ("x1_dot3", r"\dddot{x}_{1}"),
+    ("x'''", r"\dddot{x}"),
+    ("x''''", "x^{(4)}"),
+    ("x1_dot12", "x_{1}^{(12)}"),
+    ("v_C1_dot", r"\dot{v}_{\mathrm{C1}}"),
+    ("omega_d'", r"\dot{\omega}_{\mathrm{d}}"),
+    ("mass_dot", r"\dot{\mathrm{mass}}"),
+    ("x_dot_1", r"x_{\mathrm{dot},1}"),
+    ("x_dot0", r"x_{\mathrm{dot0}}"),
+    ("xdot", r"\mathrm{xdot}"),
     ("x_", r"\text{x\_}"),
     (r"\write18{x}", r"\text{\textbackslash{}write18\{x\}}"),
     ("@i", r"\mathrm{i}"),
@@ -56,6 +74,12 @@ ALIKE = [
     ("k1a", "k_1a"),
     ("k1_2", "k_1_2"),
     ("mass2", "mass_2"),
+    ("x1'", "x_1_dot"),
+    ("x_ddot", "x''"),
+    ("x_dddot", "x_dot3"),
+    ("x_dot1", "x'"),
+    ("x_dot'", "x_ddot"),
+    ("x_dot4", "x''''"),
 ]
 DIFFERENT = [
     ("x_", "x"),
@@ -68,6 +92,9 @@ DIFFERENT = [
     ("epsilon", "varepsilon"),
     ("i", IMAGINARY),
     ("x", "x'"),
+    ("x'", "x''"),
+    ("x_dot", "xdot"),
+    ("x_dot_dot", "x_ddot"),
     (" @i", IMAGINARY),
 ]
 
@@ -84,7 +111,25 @@ def test_names_that_are_printed_differently_have_keys_of_their_own(one: str, oth
     assert printed_key(one) != printed_key(other)
 
 
-WORDS = ("x", "o", "omicron", "lambda", "lamda", "mass", "1", "12", "2a", "_", "__", "'", " ", "@i")
+WORDS = (
+    "x",
+    "o",
+    "omicron",
+    "lambda",
+    "lamda",
+    "mass",
+    "1",
+    "12",
+    "2a",
+    "_",
+    "__",
+    "'",
+    "_dot",
+    "_ddot",
+    "_dot3",
+    " ",
+    "@i",
+)
 
 
 @given(*[st.lists(st.sampled_from(WORDS), max_size=4).map("".join)] * 2)
@@ -105,3 +150,16 @@ def test_a_key_of_a_name_is_a_name_that_is_printed_like_it(name: str) -> None:
     if "\\" not in key:
         assert name_box(key).latex == name_box(name).latex
         assert printed_key(key) == key
+
+
+@given(st.sampled_from(["x", "x1", "v_C1", "omega_d", "mass"]), st.integers(0, 12))
+def test_primes_and_endings_are_printed_alike(name: str, order: int) -> None:
+    primed, ended = name + "'" * order, name + dot_ending(order)
+    assert name_box(primed) == name_box(ended)
+    assert printed_key(primed) == printed_key(ended)
+    assert is_raised(primed) is ("^" in name_box(primed).latex)
+
+
+@given(st.integers(0, 3))
+def test_dots_take_no_room_beside_the_letter(order: int) -> None:
+    assert name_box("x1" + "'" * order).width == name_box("x1").width
