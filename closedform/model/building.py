@@ -7,8 +7,8 @@ from collections.abc import Mapping, Sequence
 from closedform.algebra.surds import SurdSum
 from closedform.errors import Place
 from closedform.model.entries import kind_of, number_from
-from closedform.model.errors import WrongKindError
-from closedform.model.keys import check_keys
+from closedform.model.errors import LaterKeyError, WrongKindError
+from closedform.model.keys import DRIVEN_KEYS, check_keys, is_driven, uses_pi
 from closedform.model.model import Model, Output
 from closedform.model.parametric import ParametricModel
 from closedform.model.parametric_building import parametric_model
@@ -104,8 +104,11 @@ def system(  # noqa: PLR0913  the keys of a model file, each by its name
 def build(mapping: Mapping[str, object], name: str, source: Source) -> Model | ParametricModel:
     """Return the model stated by a mapping; errors give the lines of `source`."""
     check_keys(mapping, source)
+    if is_driven(mapping):
+        key = next(key for key in mapping if key in DRIVEN_KEYS)
+        raise LaterKeyError(source.at_name(key), key)
     heading = heading_of(mapping, name, source)
-    if "parameters" in mapping:
+    if "parameters" in mapping or uses_pi(mapping):
         return parametric_model(mapping, heading, source)
     return _numeric(mapping, heading, source)
 

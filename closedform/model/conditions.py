@@ -60,10 +60,9 @@ def _condition(text: object, key: str, formulas: Formulas) -> Condition:
         bigger, smaller = (right, left) if relation.startswith("<") else (left, right)
         element = difference(bigger, smaller, formulas.field, place, meanings=formulas.meanings)
         comparison = _comparison(element, relation)
-        constant = formulas.field.constant(element)
-        if constant is not None:
-            holds = relation_holds(comparison, (constant > 0) - (constant < 0))
-            raise SettledConditionError(place, text, holds)
+        sign = formulas.field.number_sign(element)
+        if sign is not None:
+            raise SettledConditionError(place, text, relation_holds(comparison, sign))
         return Condition(left, relation, right, comparison)
 
     return formulas.read(text, key, work)
@@ -111,10 +110,10 @@ def requirements_of(
         if said is None:
             continue
         text, comparison = said
-        constant = formulas.field.constant(comparison.element)
-        if constant is None:
+        sign = formulas.field.number_sign(comparison.element)
+        if sign is None:
             found.append(Requirement(text, f"parameters.{parameter.name}.assume", comparison))
-        elif not relation_holds(comparison, (constant > 0) - (constant < 0)):
+        elif not relation_holds(comparison, sign):
             place = formulas.source.at(f"substitute.{parameter.name}")
             raise SettledConditionError(place, text, holds=False)
     for k, condition in enumerate(conditions, start=1):
@@ -128,11 +127,13 @@ def domain_of(
     requirements: Sequence[Requirement],
     elements: Iterable[Scalar],
     source: Source,
+    key: str = "matrix",
 ) -> tuple[ParameterDomain, tuple[Requirement, ...]]:
     """Return the domain that the requirements make, and those that `elements` add to them.
 
     The elements have to be defined everywhere in it: for each factor of a denominator of
-    which that does not follow already, the domain says that it is not zero.
+    which that does not follow already, the domain says that it is not zero.  `key` is where
+    the elements stand.
 
     Raises:  ContradictionError if no values can satisfy the requirements.
     """
@@ -143,7 +144,7 @@ def domain_of(
         if domain.implies(comparison):
             continue
         text = f"{plain(rational_formula(field, factor))} != 0"
-        added.append(Requirement(text, "matrix", comparison))
+        added.append(Requirement(text, key, comparison))
         domain = ParameterDomain(field, (*domain.conditions, comparison))
     _refuse_contradiction(field, (*requirements, *added), source)
     return domain, tuple(added)

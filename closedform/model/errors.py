@@ -7,13 +7,16 @@ from closedform.notation.errors import PlacedError, quoted
 
 __all__ = [
     "BinaryFractionError",
+    "ClashingKeysError",
     "DuplicateNameError",
     "InitialLengthError",
+    "InputColumnsError",
     "LaterKeyError",
     "LookalikeNamesError",
     "MisplacedKeyError",
     "MissingInitialError",
     "MissingKeyError",
+    "MixedFormsError",
     "ModelError",
     "NoStatesError",
     "RowCountError",
@@ -62,9 +65,35 @@ class LaterKeyError(ModelError):
         self.key = key
 
     def _paragraph(self) -> str:
+        return f"this version does not read '{self.key}' yet; take it away"
+
+
+class MixedFormsError(ModelError):
+    """Keys of two ways to state a model; `key` does not belong to that of `first`."""
+
+    def __init__(self, place: Place, first: str, key: str) -> None:
+        super().__init__(place, first, key)
+        self.first, self.key = first, key
+
+    def _paragraph(self) -> str:
         return (
-            f"this version does not read '{self.key}' yet; state the model by 'states', "
-            "'matrix' and 'initial'"
+            f"'{self.first}' and '{self.key}' state a model in two different ways; state it by "
+            "'equations', or by 'mass', 'damping' and 'stiffness', or by 'matrix', and take the "
+            "other keys away"
+        )
+
+
+class ClashingKeysError(ModelError):
+    """Two keys that do not go together, and why."""
+
+    def __init__(self, place: Place, key: str, other: str, reason: str) -> None:
+        super().__init__(place, key, other, reason)
+        self.key, self.other, self.reason = key, other, reason
+
+    def _paragraph(self) -> str:
+        return (
+            f"'{self.key}' and '{self.other}' do not go together: {self.reason}; take one of "
+            "them away"
         )
 
 
@@ -196,6 +225,20 @@ class RowLengthError(ModelError):
             f"{_are(self.states, 'state')}, so {difference} "
             f"{relation if difference == 1 else relation.replace('is', 'are', 1)}; "
             "the matrix must be square"
+        )
+
+
+class InputColumnsError(ModelError):
+    """A row of the input matrix with another number of entries than there are inputs."""
+
+    def __init__(self, place: Place, row: int, length: int, inputs: int) -> None:
+        super().__init__(place, row, length, inputs)
+        self.row, self.length, self.inputs = row, length, inputs
+
+    def _paragraph(self) -> str:
+        return (
+            f"row {self.row} of the input matrix has {_counted(self.length, 'entry')}, but there "
+            f"{_are(self.inputs, 'input')}; write one entry for each input, in their order"
         )
 
 

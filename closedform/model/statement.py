@@ -13,6 +13,7 @@ from closedform.algebra.surds import SurdSum
 from closedform.model.entries import kind_of, number_from
 from closedform.model.errors import (
     InitialLengthError,
+    InputColumnsError,
     MissingInitialError,
     RowCountError,
     RowLengthError,
@@ -28,6 +29,7 @@ __all__ = [
     "array_of",
     "heading_of",
     "initial_of",
+    "input_matrix_of",
     "matrix_of",
     "outputs_of",
     "table_of",
@@ -42,7 +44,10 @@ LONGEST_STEM = 100
 
 @dataclass(frozen=True, slots=True)
 class Heading:
-    """What every model has: `name` is the stem under which results are filed."""
+    """What every model has: `name` is the stem under which results are filed.
+
+    There are no `states` where equations are to tell the unknowns.
+    """
 
     name: str
     title: str
@@ -64,13 +69,16 @@ def heading_of(mapping: Mapping[str, object], name: str, source: Source) -> Head
         raise WrongKindError(source.at("title"), "a title", "empty text")
     time = text_of(mapping.get("time", "t"), "time", source)
     check_time(time, source)
-    given = array_of(mapping["states"], "an array of names", "states", source)
+    states: tuple[str, ...] = ()
+    if "states" in mapping:
+        given = array_of(mapping["states"], "an array of names", "states", source)
+        states = check_states(given, time, source)
     return Heading(
         name=_stem(name),
         title=" ".join(title.split()),
         summary=text_of(mapping.get("summary", ""), "summary", source),
         time=time,
-        states=check_states(given, time, source),
+        states=states,
         times=tuple(
             number_from(entry, f"times[{k}]", source)
             for k, entry in enumerate(
@@ -102,19 +110,39 @@ def table_of(value: object, expected: str, key: str, source: Source) -> Mapping[
     return value
 
 
-def matrix_of(value: object, n: int, source: Source, entry: Entry[T]) -> tuple[tuple[T, ...], ...]:
-    """Return n rows of n entries, each made by `entry`."""
-    given = array_of(value, "an array of rows", "matrix", source)
+def matrix_of(
+    value: object, n: int, source: Source, entry: Entry[T], key: str = "matrix"
+) -> tuple[tuple[T, ...], ...]:
+    """Return n rows of n entries, each made by `entry`; `key` says where they stand."""
+    given = array_of(value, "an array of rows", key, source)
     rows = [
-        array_of(row, f"a row, an array of {n} numbers,", f"matrix[{k}]", source)
+        array_of(row, f"a row, an array of {n} numbers,", f"{key}[{k}]", source)
         for k, row in enumerate(given, start=1)
     ]
     if len(rows) != n:
-        raise RowCountError(source.at("matrix"), len(rows), n)
+        raise RowCountError(source.at(key), len(rows), n)
     for k, row in enumerate(rows, start=1):
         if len(row) != n:
-            raise RowLengthError(source.at(f"matrix[{k}]"), k, len(row), n)
-    return tuple(_entries(row, f"matrix[{k}]", entry) for k, row in enumerate(rows, start=1))
+            raise RowLengthError(source.at(f"{key}[{k}]"), k, len(row), n)
+    return tuple(_entries(row, f"{key}[{k}]", entry) for k, row in enumerate(rows, start=1))
+
+
+def input_matrix_of(
+    value: object, n: int, m: int, source: Source, entry: Entry[T]
+) -> tuple[tuple[T, ...], ...]:
+    """Return n rows of m entries, a row for each state and a column for each input."""
+    key = "input_matrix"
+    given = array_of(value, "an array of rows", key, source)
+    rows = [
+        array_of(row, f"a row, an array of {m} numbers,", f"{key}[{k}]", source)
+        for k, row in enumerate(given, start=1)
+    ]
+    for k, row in enumerate(rows, start=1):
+        if len(row) != m:
+            raise InputColumnsError(source.at(f"{key}[{k}]"), k, len(row), m)
+    if len(rows) != n:
+        raise RowCountError(source.at(key), len(rows), n)
+    return tuple(_entries(row, f"{key}[{k}]", entry) for k, row in enumerate(rows, start=1))
 
 
 def initial_of(

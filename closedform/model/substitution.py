@@ -7,7 +7,7 @@ from dataclasses import replace
 from graphlib import CycleError, TopologicalSorter
 
 from closedform.algebra.field import Scalar
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.errors import Place
 from closedform.model.formulas import Formulas, formula_text
 from closedform.model.naming import Names, named_in
@@ -27,12 +27,18 @@ __all__ = ["substituted"]
 
 
 def substituted(
-    value: object, declared: Sequence[Parameter], names: Names, source: Source
+    value: object,
+    declared: Sequence[Parameter],
+    names: Names,
+    source: Source,
+    *,
+    with_pi: bool = False,
 ) -> tuple[Formulas, tuple[Definition, ...], Names]:
     """Return what reads formulas in the parameters that remain, and the re-stated ones.
 
     `value` is the table [substitute].  Its formulas may use each other, but not in a circle:
-    the values returned hold none of the re-stated names.
+    the values returned hold none of the re-stated names.  `with_pi` says that the number pi
+    stands in formulas of the model.
 
     Raises:  SubstitutionCycleError, RestatedValueError, NoParametersError if none remains,
              the errors of names, and what `read_formula` and `rational_value` raise.
@@ -41,13 +47,14 @@ def substituted(
     undeclared = [name for name in table if all(name != p.name for p in declared)]
     check_words(dict.fromkeys(undeclared), "substitute", source)
     names = named_in(undeclared, "substitute", "a re-stated parameter", names, source)
-    known = frozenset(table) | frozenset(parameter.name for parameter in declared)
+    numbers = (PI,) if with_pi else ()
+    known = frozenset((*table, *(parameter.name for parameter in declared), *numbers))
     formulas = {name: _formula(name, formula, known, source) for name, formula in table.items()}
     order = _order(formulas, source)
     remaining = tuple(parameter.name for parameter in declared if parameter.name not in table)
-    if not remaining:
+    if not remaining and not with_pi:
         raise NoParametersError(source.at_name("substitute"), restated=True)
-    field = ParameterField(parameters=remaining)
+    field = ParameterField(parameters=(*remaining, *numbers))
     meanings: dict[str, Scalar] = {}
     for name in order:
         reading = Formulas(field, meanings, names, source)

@@ -7,10 +7,7 @@ from dataclasses import dataclass
 from difflib import get_close_matches
 from functools import cached_property
 
-from flint import ctx
-
 from closedform.algebra.domain import Comparison
-from closedform.algebra.enclosure import ball_of
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.surds import SurdSum
 from closedform.errors import Place
@@ -65,7 +62,7 @@ class ValueReading:
             return None
         values = {
             name: self._own[name] if name in self._own else self._any(name)
-            for name in self.field.parameters
+            for name in self.field.free
         }
         return ValueSet("", tuple(values.items()))
 
@@ -91,7 +88,7 @@ class ValueReading:
         table = table_of(row, "a table with a value for each parameter", key, self.source)
         for name in table:
             self._check_name(str(name), f"{key}.{name}")
-        names = self.field.parameters
+        names = self.field.free
         keys = {name: f"{key}.{name}" for name in names if name in table}
         given = {name: number_from(table[name], keys[name], self.source) for name in keys}
         both = {**self._own, **given}
@@ -104,7 +101,7 @@ class ValueReading:
         return ValueSet(label or str(number), tuple(values.items()))
 
     def _check_name(self, name: str, key: str) -> None:
-        known = self.field.parameters
+        known = self.field.free
         if name in (*known, "label"):
             return
         place = self.source.at_name(key)
@@ -131,36 +128,20 @@ class ValueReading:
         for requirement in self.requirements:
             concerned = self.field.names_in(requirement.comparison.element)
             if concerned <= values.keys() and not self._holds(requirement.comparison, values):
-                names = [name for name in self.field.parameters if name in concerned]
+                names = [name for name in self.field.free if name in concerned]
                 place = self._place(next((keys[n] for n in names if n in keys), whole))
                 inside = tuple((name, _text(values[name])) for name in names)
                 raise BrokenConditionError(place, requirement.text, inside)
 
     def _holds(self, comparison: Comparison, values: Mapping[str, SurdSum]) -> bool:
         """Say whether a comparison holds at a point; it does not where it has no value."""
-        try:
-            value = self.field.exact_at(comparison.element, values)
-        except ZeroDivisionError:
-            return False
-        return relation_holds(comparison, _sign(value))
+        sign = self.field.sign_at(comparison.element, values)
+        return sign is not None and relation_holds(comparison, sign)
 
     def _place(self, key: str) -> Place:
         """Return the place of a value, or of the row that leaves it to the parameter."""
         place = self.source.at(key)
         return self.source.at_name(key) if place.line is None else place
-
-
-def _sign(value: SurdSum) -> int:
-    """Return the sign of a number, -1, 0 or 1: zero exactly, else by refined enclosures."""
-    if value.is_zero:
-        return 0
-    bits = 64
-    while True:
-        with ctx.workprec(bits):
-            ball = ball_of(value)
-        if not ball.contains(0):
-            return 1 if ball > 0 else -1
-        bits *= 2
 
 
 def _text(value: SurdSum) -> str:

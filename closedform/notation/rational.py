@@ -71,6 +71,13 @@ def rational_value(
     return _Functions(field, meanings).value(expression, place)
 
 
+def arithmetic_in(
+    field: ParameterField, meanings: Mapping[str, Scalar] = NOTHING
+) -> Arithmetic[Scalar]:
+    """Return the arithmetic by which `rational_value` finds values."""
+    return _Functions(field, meanings)
+
+
 def difference(
     one: Expression,
     other: Expression,

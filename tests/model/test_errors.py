@@ -11,13 +11,16 @@ from closedform.errors import InputError, Place
 from closedform.model import errors, file_errors
 from closedform.model.errors import (
     BinaryFractionError,
+    ClashingKeysError,
     DuplicateNameError,
     InitialLengthError,
+    InputColumnsError,
     LaterKeyError,
     LookalikeNamesError,
     MisplacedKeyError,
     MissingInitialError,
     MissingKeyError,
+    MixedFormsError,
     ModelError,
     NoStatesError,
     RowCountError,
@@ -42,9 +45,14 @@ from closedform.model.file_errors import (
 HERE = Place("bench.toml", "some.key")
 MODEL: list[tuple[ModelError, str]] = [
     (BinaryFractionError(HERE, 0.1), "0.1 is a binary floating-point number, and models are exact"),
+    (
+        ClashingKeysError(HERE, "at_points", "initial", "some reason"),
+        "'at_points' and 'initial' do not go together: some reason; take one of them away",
+    ),
     (DuplicateNameError(HERE, "x"), "the name 'x' is given twice"),
     (InitialLengthError(HERE, 1, 2), "'initial' has 1 value, but there are 2 states"),
-    (LaterKeyError(HERE, "mass"), "this version does not read 'mass' yet"),
+    (InputColumnsError(HERE, 2, 1, 3), "row 2 of the input matrix has 1 entry, but there are 3"),
+    (LaterKeyError(HERE, "document"), "this version does not read 'document' yet; take it away"),
     (
         LookalikeNamesError(HERE, "x_1", "x1", "x_1"),
         "the names 'x1' and 'x_1' would be printed alike, both as x with the index 1; give one",
@@ -56,6 +64,10 @@ MODEL: list[tuple[ModelError, str]] = [
     (
         MissingKeyError(HERE, "title", "title = 'a'"),
         "is missing; add a line such as 'title = 'a''.",
+    ),
+    (
+        MixedFormsError(HERE, "equations", "matrix"),
+        "'equations' and 'matrix' state a model in two different ways; state it by 'equations'",
     ),
     (NoStatesError(HERE), "there are no states"),
     (RowCountError(HERE, 3, 1), "the matrix has 3 rows, but there is 1 state;"),

@@ -189,9 +189,9 @@ ERRORS: list[tuple[list[dict[str, object]], list[str], dict[str, Any], type[Exce
         {},
         SingularEquationsError,
         (
-            "equations[2]: equation 1, '1*v + -1*x' = 0', and equation 2, '1*v' + -1*x'' = 0' do not "
-            "determine the unknowns: with their derivatives, one of them follows from the others, or "
-            "contradicts them, so that nothing determines 'v' and 'x'"
+            "equations[2]: equation 1, '1*v + -1*x' = 0', and equation 2, '1*v' + -1*x'' = 0' "
+            "do not determine the unknowns: with their derivatives, one of them follows from the "
+            "others, or contradicts them, so that nothing determines 'v' and 'x'"
         ),
     ),
     (
