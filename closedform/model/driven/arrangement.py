@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import replace
 from functools import cmp_to_key
 from itertools import pairwise
@@ -13,7 +13,10 @@ from closedform.model.driven.signal import Burst, Impulse, Signal
 from closedform.model.driven.signal_algebra import added, tidy
 from closedform.model.driven.wave_sums import gathered, is_polynomial
 
-__all__ = ["arranged", "cut"]
+__all__ = ["Compared", "arranged", "cut"]
+
+Compared = Callable[[Scalar, Scalar], int]
+"""What tells the order of two instants: -1, 0 or 1; it may raise UnknownOrderError."""
 
 
 def cut(signal: Signal, start: Scalar | None, end: Scalar | None, order: Order) -> Signal:
@@ -39,14 +42,14 @@ def cut(signal: Signal, start: Scalar | None, end: Scalar | None, order: Order) 
     return added([Signal(tuple(bursts), impulses)])
 
 
-def arranged(signal: Signal, order: Order) -> Signal:
+def arranged(signal: Signal, compared: Compared) -> Signal:
     """Return the same signal in its canonical form.
 
     No two bursts of it hold like waves at one time: windows are joined, and waves that cancel
     are off, so that step(t) - step(t - 2) is a burst from 0 to 2.  Bursts stand in the order
     of their starts, impulses in that of their instants.
 
-    Raises:  UnknownOrderError.
+    Raises what `compared` does.
     """
     families: dict[tuple[Scalar, ...], list[Burst]] = {}
     for burst in signal.bursts:
@@ -57,15 +60,15 @@ def arranged(signal: Signal, order: Order) -> Signal:
                 turned = (wave.rate, -wave.frequency, wave.origin)
                 key = turned if turned in families else key
             families.setdefault(key, []).append(replace(burst, waves=(wave,)))
-    parts = [Signal(tuple(_apart(family, order))) for family in families.values()]
+    parts = [Signal(tuple(_apart(family, compared))) for family in families.values()]
     total = added([*parts, Signal((), signal.impulses)])
 
     def by_window(one: Burst, other: Burst) -> int:
-        starts = _compared(one.start, other.start, -1, order)
-        return starts or _compared(one.end, other.end, 1, order)
+        starts = _compared(one.start, other.start, -1, compared)
+        return starts or _compared(one.end, other.end, 1, compared)
 
     def by_instant(one: Impulse, other: Impulse) -> int:
-        return order.compared(one.at, other.at)
+        return compared(one.at, other.at)
 
     return Signal(
         tuple(sorted(total.bursts, key=cmp_to_key(by_window))),
@@ -74,12 +77,12 @@ def arranged(signal: Signal, order: Order) -> Signal:
     )
 
 
-def _apart(family: Sequence[Burst], order: Order) -> list[Burst]:
+def _apart(family: Sequence[Burst], compared: Compared) -> list[Burst]:
     """Bursts of like waves as bursts of which no two are on at one time."""
     instants: list[Scalar] = []
     for burst in family:
         instants += [i for i in (burst.start, burst.end) if i is not None and i not in instants]
-    instants.sort(key=cmp_to_key(order.compared))
+    instants.sort(key=cmp_to_key(compared))
     place = {None: 0} | {instant: k for k, instant in enumerate(instants, start=1)}
     found: list[Burst] = []
     for k, (start, end) in enumerate(pairwise([None, *instants, None])):
@@ -100,8 +103,8 @@ def _apart(family: Sequence[Burst], order: Order) -> list[Burst]:
     return found
 
 
-def _compared(one: Scalar | None, other: Scalar | None, missing: int, order: Order) -> int:
+def _compared(one: Scalar | None, other: Scalar | None, missing: int, compared: Compared) -> int:
     """Compare two starts or two ends; `missing` is -1 if None comes first, 1 if last."""
     if one is None or other is None:
         return missing * ((one is None) - (other is None))
-    return order.compared(one, other)
+    return compared(one, other)
