@@ -2,38 +2,23 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
-from fractions import Fraction
-from typing import Literal
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.sign_argument import SignArgument
+from closedform.model.driven.model import DrivenModel
 from closedform.notation.expression import Expression
+from closedform.response.driven.composition import element_formula
+from closedform.response.driven.functions import DrivenFunctions
+from closedform.response.driven.particular import Drive
+from closedform.response.driven.polar import Angle, Place, polar
+from closedform.response.driven.steady import waves_for_ever, waves_of_row
 
-__all__ = ["Angle", "Lag", "Phasor", "Place", "Sinusoid"]
+__all__ = ["Angle", "Lag", "Phasor", "Place", "Sinusoid", "phasors_of"]
 
-Place = Literal["I", "II", "III", "IV", "+x", "+y", "-x", "-y"]
-"""A quadrant, or the half axis on which a point lies."""
-
-
-@dataclass(frozen=True)
-class Angle:
-    """The angle phi of the point (x, y), with x = r cos phi, y = r sin phi, -pi < phi <= pi.
-
-    `y` and `x` are elements, common factors of known sign taken out; `above` and `beside`
-    are their formulas, so that phi = atan2(above, beside).  `signs` are those of y and x;
-    `place` is where the point lies, None where these do not tell.
-    `arc` = (turn, direction, ratio) says phi = turn · pi + direction · arctan(ratio), with
-    direction 1 or -1; on an axis direction is 0.  It is None where the signs leave it open.
-    """
-
-    y: Scalar
-    x: Scalar
-    above: Expression
-    beside: Expression
-    signs: tuple[SignArgument, SignArgument]
-    place: Place | None
-    arc: tuple[Fraction, int, Expression] | None
+SignOf = Callable[[Scalar], SignArgument]
+Put = Callable[[Scalar], Scalar]
 
 
 @dataclass(frozen=True)
@@ -80,3 +65,85 @@ class Phasor:
     mean: Scalar
     mean_formula: Expression
     sinusoids: tuple[Sinusoid, ...]
+
+
+def phasors_of(
+    model: DrivenModel, functions: DrivenFunctions, drive: Drive, sign_of: SignOf, put: Put
+) -> tuple[Phasor | None, ...]:
+    """Return a phasor for each row whose steady state is oscillating, None for the others.
+
+    `drive` holds the tones in the case, `sign_of` tells signs there, `put` puts its equations
+    into elements.
+    """
+    found: list[Phasor | None] = []
+    zero = model.field.domain.zero
+    for row in range(len(model.rows)):
+        waves = waves_of_row(drive, functions, functions.steady or (), row)
+        if any(w.power or w.rate for w in waves) or not any(w.frequency for w in waves):
+            found.append(None)
+            continue
+        mean = sum((w.amount for w in waves if w.kernel == "one"), zero)
+        parts: dict[tuple[Scalar, Scalar], list[Scalar]] = {}
+        for wave in waves:
+            if wave.kernel != "one":
+                part = parts.setdefault((wave.frequency, wave.origin), [zero, zero])
+                part[wave.kernel == "sin"] += wave.amount
+        sinusoids = []
+        for (frequency, origin), (cosine, sine) in parts.items():
+            if not cosine and not sine:
+                continue
+            point = polar(model.field, sign_of, sine, cosine)
+            given = _only_input(model, put, frequency, origin)
+            sinusoids.append(
+                Sinusoid(
+                    frequency,
+                    origin,
+                    cosine,
+                    sine,
+                    point.square,
+                    point.modulus,
+                    point.angle,
+                    None if given is None else _lag(model, sign_of, given, (cosine, sine)),
+                )
+            )
+        formula = element_formula(model.field, mean)
+        found.append(Phasor(row, mean, formula, tuple(sinusoids)))
+    return tuple(found)
+
+
+@dataclass(frozen=True)
+class _Given:
+    """An input cosine · cos(w s) + sine · sin(w s)."""
+
+    place: int
+    cosine: Scalar
+    sine: Scalar
+
+
+def _only_input(model: DrivenModel, put: Put, frequency: Scalar, origin: Scalar) -> _Given | None:
+    """The input that alone holds a sinusoid of this frequency, and holds it from this origin."""
+    found: dict[int, list[Scalar]] = {}
+    zero = model.field.domain.zero
+    for place, wave in waves_for_ever(model):
+        own = put(wave.frequency)
+        if put(wave.rate) or wave.kernel == "one" or own not in (frequency, -frequency):
+            continue
+        part = found.setdefault(place, [zero, zero])
+        if wave.power or put(wave.origin) != origin:
+            return None
+        turned = wave.kernel == "sin" and own != frequency
+        part[wave.kernel == "sin"] += put(-wave.amount if turned else wave.amount)
+    if len(found) != 1:
+        return None
+    ((place, (cosine, sine)),) = found.items()
+    return _Given(place, cosine, sine) if cosine or sine else None
+
+
+def _lag(
+    model: DrivenModel, sign_of: SignOf, given: _Given, response: tuple[Scalar, Scalar]
+) -> Lag:
+    """The ratio of the complex amplitudes a - ib of the response and U - iV of the input."""
+    (a, b), (u, v) = response, (given.cosine, given.sine)
+    size = u**2 + v**2
+    point = polar(model.field, sign_of, (b * u - a * v) / size, (a * u + b * v) / size)
+    return Lag(given.place, point.square, point.modulus, point.angle)

@@ -33,6 +33,7 @@ from closedform.response.driven.periodic import (
     repeating,
     without_repeats,
 )
+from closedform.response.driven.phasor import Phasor, phasors_of
 from closedform.response.driven.stability import Stability, stability_of
 from closedform.response.driven.steady import SteadyState, stays, steady_state
 from closedform.response.parametric.case import Case
@@ -87,6 +88,11 @@ class DrivenSolution:
     def steady_state(self) -> SteadyState | None:
         """The last interval in its steady and its transient part, for a stable model."""
         return steady_state(self.model, self.functions, self.columns, self.drive, self.sign_of)
+
+    @cached_property
+    def phasors(self) -> tuple[Phasor | None, ...]:
+        """Amplitude and phase of each row whose steady state oscillates; None for the others."""
+        return phasors_of(self.model, self.functions, self.drive, self.sign_of, self.put)
 
     @cached_property
     def solution(self) -> tuple[Expression, ...]:
