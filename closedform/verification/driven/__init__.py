@@ -1,0 +1,1 @@
+"""What is proved about a driven response: its equations as typed, its joins, its inputs."""
