@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 from closedform.algebra.branches import Branch
@@ -34,6 +34,7 @@ from closedform.response.driven.periodic import (
     without_repeats,
 )
 from closedform.response.driven.phasor import Phasor, phasors_of
+from closedform.response.driven.resonance import Resonance, resonances_of
 from closedform.response.driven.stability import Stability, stability_of
 from closedform.response.driven.steady import SteadyState, stays, steady_state
 from closedform.response.parametric.case import Case
@@ -51,7 +52,8 @@ class DrivenSolution:
 
     `columns` are the formulas of the columns of `functions`, r x c; `case` is that of the
     stacked response, None without parameters.  What inputs that repeat add to it, from rest,
-    is in `periodic`, made of `periods`.  `stability` is that of the model's own matrix.
+    is in `periodic`, made of `periods`.  `stability` is that of the model's own matrix;
+    `resonances` are the tones of inputs that are eigenvalues of it.
     """
 
     model: DrivenModel
@@ -61,6 +63,7 @@ class DrivenSolution:
     stability: Stability
     periodic: tuple[PeriodicSolution, ...] = ()
     periods: tuple[PeriodFunctions, ...] = ()
+    resonances: tuple[Resonance, ...] = ()
 
     @property
     def condition(self) -> str:
@@ -218,6 +221,7 @@ class _Sought:
     base: DrivenFunctions
     periods: tuple[PeriodFunctions, ...]
     stability: Stability
+    resonances: tuple[Resonance, ...]
 
     @property
     def columns(self) -> ExponentialMatrix:
@@ -236,6 +240,7 @@ def _sought(
     relation: Scalar | None = None,
     domain: ParameterDomain | None = None,
 ) -> _Sought:
+    sign_of = sign_oracle(model.field, domain)
     stability = stability_of(model, domain, put)
     tells = stability.verdict == "stable" and not repeating(model)
     base = driven_functions(
@@ -243,13 +248,14 @@ def _sought(
         exponential,
         put=put,
         relation=relation,
-        stays=stays(sign_oracle(model.field, domain)) if tells else None,
+        stays=stays(sign_of) if tells else None,
     )
     periods = tuple(
         period_functions(model, repeat, exponential, put=put, relation=relation)
         for repeat in repeating(model)
     )
-    return _Sought(base, periods, stability)
+    resonances = resonances_of(model, exponential, sign_of, put=put, relation=relation)
+    return _Sought(base, periods, stability, resonances)
 
 
 def _solution(
@@ -272,6 +278,14 @@ def _solution(
         )
         first, first_parted = last, last_parted
     own = tuple(row[:width] for row in columns)
+    condition = "true" if case is None else case.condition
     return DrivenSolution(
-        model, sought.base, own, case, sought.stability, tuple(periodic), sought.periods
+        model,
+        sought.base,
+        own,
+        case,
+        sought.stability,
+        tuple(periodic),
+        sought.periods,
+        tuple(replace(resonance, condition=condition) for resonance in sought.resonances),
     )
