@@ -37,11 +37,15 @@ class Steps:
     def free_rows(self, t: arb, enclose: Enclose) -> list[arb]:
         """Return balls for the rows of the response to the initial values alone."""
         since = t - enclose(self.setting.instants[0])
-        a = self._matrix(self.setting.model.reduction.matrix, enclose)
         initial = [enclose(self.setting.put(x)) for x in self.setting.model.initial or ()]
-        states = _applied(_exponential(a, since), initial)
+        states = self.carried_free(initial, since, enclose)
         silent = [arb(0)] * len(self.setting.model.inputs)
         return self.with_rows(states, silent, enclose)
+
+    def carried_free(self, states: Sequence[arb], since: arb, enclose: Enclose) -> list[arb]:
+        """Return balls for e^(A since) states."""
+        a = self._matrix(self.setting.model.reduction.matrix, enclose)
+        return _applied(_exponential(a, since), states)
 
     def inputs(self, k: int, t: arb, enclose: Enclose) -> list[arb]:
         """Return balls for the inputs at an instant of an interval."""

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 
-from closedform.response.driven.response import DrivenResponse
+from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.driven.declared import declared_check
 from closedform.verification.driven.equations import balance_check, rows_check, state_form_check
 from closedform.verification.driven.generated import generator_check, stacked_check
 from closedform.verification.driven.joins import initial_check, join_check
@@ -16,8 +18,14 @@ from closedform.verification.driven.parts import (
     sustained_check,
     switch_check,
 )
+from closedform.verification.driven.periods import (
+    blow_check,
+    period_formula_check,
+    period_settings,
+)
 from closedform.verification.driven.reduction import reduction_checks
 from closedform.verification.driven.setting import Setting, setting_of
+from closedform.verification.driven.typed import typed_check
 from closedform.verification.driven.written import formula_check
 from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.parametric.verify import verify_cases
@@ -42,7 +50,8 @@ def verify_driven(response: DrivenResponse) -> VerificationRecord | CaseRecords:
                 (
                     *record.checks,
                     *_checks(
-                        setting_of(response, solution),
+                        response,
+                        solution,
                         frozenset(
                             {
                                 *stacked.model.field.parameters,
@@ -60,12 +69,27 @@ def verify_driven(response: DrivenResponse) -> VerificationRecord | CaseRecords:
         return CaseRecords(whole, cases)
     (solution,) = response.solutions
     names = frozenset(c.name for c in stacked.closed_forms.constants)
-    own = _checks(setting_of(response, solution), names)
+    own = _checks(response, solution, names)
     return VerificationRecord((*verify(stacked).checks, stacked_check(model), *own))
 
 
-def _checks(setting: Setting, names: frozenset[str]) -> Iterator[Check]:
+def _checks(
+    response: DrivenResponse, solution: DrivenSolution, names: frozenset[str]
+) -> Iterator[Check]:
+    setting = setting_of(response, solution)
+    yield from _exact_checks(setting)
+    yield formula_check(setting, names)
+    for single, functions, written in period_settings(response, solution):
+        for check in _exact_checks(single):
+            yield replace(check, item=f"one period: {check.item}")
+        yield blow_check(single, functions)
+        yield period_formula_check(single, written, names)
+
+
+def _exact_checks(setting: Setting) -> Iterator[Check]:
     yield intervals_check(setting)
+    yield from declared_check(setting)
+    yield from typed_check(setting)
     yield from reduction_checks(setting)
     if setting.model.balances:
         yield balance_check(setting)
@@ -79,4 +103,3 @@ def _checks(setting: Setting, names: frozenset[str]) -> Iterator[Check]:
         yield sustained_check(setting)
         yield jump_check(setting)
     yield from generator_check(setting)
-    yield formula_check(setting, names)
