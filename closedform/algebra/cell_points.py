@@ -7,13 +7,15 @@ from collections.abc import Iterator, Mapping, Sequence
 from fractions import Fraction
 
 from closedform.algebra.field import Scalar
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.algebra.sign_argument import Comparison, relation_values
 from closedform.algebra.univariate import Cell, admissible_cells, simplest_between
 
 __all__ = ["only_name", "points_in_cells"]
 
 TRIES = 60
+NEAR_PI = Fraction(245850922, 78256779)
+"""A convergent of the continued fraction of pi."""
 WIDTHS = (6, 9, 20, 40, 100, 3000)
 """How much of an infinite interval is looked at."""
 
@@ -74,8 +76,19 @@ def _turned(
                 element = field.substituted(element, {name: value})
             except ZeroDivisionError:
                 return None
-        turned.append(Comparison(element, condition.relation))
+        turned.append(Comparison(_near(field, element), condition.relation))
     return turned
+
+
+def _near(field: ParameterField, element: Scalar) -> Scalar:
+    """An element with a rational number in the place of pi: only points are found by it."""
+    if not field.holds_pi(element):
+        return element
+    above, below = (
+        field.substituted(field.of_polynomial(q), {PI: field.scalar(NEAR_PI)})
+        for q in (element.numer, element.denom)
+    )
+    return above / below if below else element
 
 
 def _cells_left(

@@ -80,6 +80,11 @@ class BaseField:
             return QQ
         return QQ.algebraic_field(*(sqrt(Integer(d)) for d in self.radicands))
 
+    @property
+    def encloses_only(self) -> bool:
+        """Whether FLINT knows the elements by balls only, and not as rational numbers."""
+        return bool(self.radicands)
+
     @cached_property
     def _basis(self) -> dict[int, Scalar]:
         """Each squarefree product of the radicands, and its square root in the domain."""
@@ -118,6 +123,10 @@ class BaseField:
         for power, coefficient in zip(self._powers, reversed(element.to_list()), strict=False):
             total += power * SurdSum.rational(rational(coefficient))
         return total
+
+    def number(self, element: Scalar) -> SurdSum | None:
+        """Return an element as `surds` does, or None where it is no such sum."""
+        return self.surds(element)
 
     def rational_parts(self, element: Scalar) -> list[tuple[int, int, int]]:
         """Return (numerator, denominator, radicand) for every term of an element."""

@@ -70,8 +70,8 @@ def _isolated(field: BaseField, p: Polynomial, bits: int) -> list[acb]:
     if not p.nth(0):  # 0 is a root: the others are found to a relative accuracy
         rest = field.polynomial(p.to_list()[:-1])
         return [acb(0), *(_isolated(field, rest, bits) if rest.degree() else [])]
-    if field.radicands:
-        return _roots_over_surds(field, p, bits)
+    if field.encloses_only:
+        return _roots_from_balls(field, p, bits)
     _, primitive = p.clear_denoms()
     integral = [int(rational(c)) for c in reversed(primitive.to_list())]
     with ctx.workprec(bits):
@@ -80,7 +80,7 @@ def _isolated(field: BaseField, p: Polynomial, bits: int) -> list[acb]:
     return [root for root, _ in pairs]
 
 
-def _roots_over_surds(field: BaseField, p: Polynomial, wanted: int) -> list[acb]:
+def _roots_from_balls(field: BaseField, p: Polynomial, wanted: int) -> list[acb]:
     """Return roots each to `wanted` bits of its modulus, from enclosed coefficients."""
     bits = wanted + 64
     finer = 8

@@ -94,9 +94,7 @@ class InOneParameter:
         """
         for name in self._field.free:
             alone = [(c, c) for c in self._stated(name)]
-            turned = [
-                (s, self._turned(s, name)) for s in self.solved if name in self._beside(s)
-            ]
+            turned = [(s, self._turned(s, name)) for s in self.solved if name in self._beside(s)]
             for solved, pairs in ((None, alone), *turned):
                 wrong = self._wrong([c for _, c in pairs])
                 if wrong is not None:

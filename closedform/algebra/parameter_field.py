@@ -101,6 +101,11 @@ class ParameterField(BaseField):
             raise ValueError(f"{element} is no number")
         return SurdSum.rational(value)
 
+    def number(self, element: Scalar) -> SurdSum | None:
+        """Return a rational element as a number, or None for others."""
+        value = self.constant(element)
+        return None if value is None else SurdSum.rational(value)
+
     def sign(self, element: Scalar) -> int:
         """Return the sign of an element without parameters.  Raises ValueError for others."""
         found = self.number_sign(element)
@@ -120,7 +125,7 @@ class ParameterField(BaseField):
 
         A polynomial in pi that is not zero has a sign, and balls narrow enough tell it.
         """
-        above, below = (self._in_pi(q, values) for q in (element.numer, element.denom))
+        above, below = (self.in_pi(q, values) for q in (element.numer, element.denom))
         return _sign_in_pi(above) * _sign_in_pi(below) if below else None
 
     def holds_pi(self, element: Scalar) -> bool:
@@ -161,7 +166,7 @@ class ParameterField(BaseField):
 
         Raises ZeroDivisionError where its denominator vanishes there.
         """
-        if not values or not self.names_in(element) & set(values):
+        if not values or not self.symbols_in(element) & set(values):
             return element
         below = self._composed(element.denom, values)
         if not below:
@@ -187,6 +192,15 @@ class ParameterField(BaseField):
         """Return the partial derivative with respect to a parameter."""
         return element.diff(self._gens[name])
 
+    @property
+    def encloses_only(self) -> bool:
+        """Elements are known to FLINT by balls."""
+        return True
+
+    def enclose(self, element: Scalar) -> arb:
+        """Return a ball for an element without parameters.  Raises KeyError for others."""
+        return self.enclose_at(element, {})
+
     def enclose_at(self, element: Scalar, values: Mapping[str, arb]) -> arb:
         """Return a ball for the element at values of its parameters; not finite at a pole.
 
@@ -201,9 +215,8 @@ class ParameterField(BaseField):
             value = rational(coefficient)
             term = arb(fmpq(value.numerator, value.denominator))
             for name, exponent in zip(self.parameters, monomial, strict=True):
-                base = (arb.pi() if name == PI else values[name]) if exponent else None
                 for _ in range(exponent):  # a power of a ball around 0 is not finite in FLINT
-                    term *= base
+                    term *= arb.pi() if name == PI else values[name]
             total += term
         return total
 
@@ -222,7 +235,7 @@ class ParameterField(BaseField):
 
         Raises ZeroDivisionError at a pole.
         """
-        above, below = (self._in_pi(q, values) for q in (element.numer, element.denom))
+        above, below = (self.in_pi(q, values) for q in (element.numer, element.denom))
         if not below:
             raise ZeroDivisionError(str(element))
         lead = above[-1] / below[-1] if above else SurdSum(())
@@ -232,10 +245,10 @@ class ParameterField(BaseField):
         )
         return lead if same else None
 
-    def _in_pi(
+    def in_pi(
         self, polynomial: ParameterPolynomial, values: Mapping[str, SurdSum]
     ) -> list[SurdSum]:
-        """The coefficients of the powers of pi at values, lowest first, the last one not 0."""
+        """Return the coefficients of powers of pi at values, lowest first, the last one not 0."""
         found: dict[int, SurdSum] = {}
         for monomial, coefficient in polynomial.iterterms():
             term, power = SurdSum.rational(rational(coefficient)), 0

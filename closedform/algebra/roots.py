@@ -135,7 +135,7 @@ def _mean(field: BaseField, p: Polynomial) -> Scalar:
 
 
 def _half_gap(field: BaseField, squares: Polynomial) -> SurdSum | None:
-    if field.radicands or int(squares.degree()) != len("ab"):
+    if field.encloses_only or int(squares.degree()) != len("ab"):
         return None
     b, c = rational(squares.nth(1)), rational(squares.nth(0))
     return root_of_rational(b * b / 4 - c) if b * b >= 4 * c else None

@@ -157,7 +157,7 @@ class _AskedOverPi:
     def completed(self, point: dict[str, Fraction]) -> dict[str, PointValue] | None:
         """Return the point with all parameters, or None where a condition does not hold."""
         field, whole = self.field, _as_elements(self.field, point)
-        for name, element in reversed(self.solved.items()):
+        for name, element in reversed(list(self.solved.items())):
             try:
                 whole[name] = field.substituted(element, whole)
             except ZeroDivisionError:  # it is not defined there

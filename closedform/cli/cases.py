@@ -16,6 +16,8 @@ MOST_CASES = 12
 def parameters_line(response: ParametricResponse) -> str:
     """Return how many parameters there are, and their names."""
     names = [parameter.name for parameter in response.model.parameters]
+    if not names:
+        return "none but the number pi"
     return f"{len(names)}: {', '.join(names)}"
 
 

@@ -98,7 +98,7 @@ def _in_cases(model: ParametricModel, digits: int) -> _Made:
     response = respond_in_cases(model)
     records = verify_cases(response)
     numbers = numbers_of(response, digits=digits)
-    if model.values is not None:
+    if model.values is not None or not model.field.free:
         whole = (*records.whole.checks, numbers_check(response, numbers[0], digits=digits))
         records = CaseRecords(VerificationRecord(whole), records.cases)
     _refuse(model.name, records)

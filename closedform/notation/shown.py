@@ -27,10 +27,15 @@ class FormulaMatrix(tuple[tuple[Expression, ...], ...]):
         return "\n".join(f"[{line}]" for line in lines)
 
     def _repr_latex_(self) -> str:
-        rows = [" & ".join(formula(entry).latex for entry in row) for row in self]
+        rows = [" & ".join(_in_notebook(formula(entry).latex) for entry in row) for row in self]
         columns = "c" * (len(self[0]) if self else 1)
         body = r" \\ ".join(rows)
         return rf"$\displaystyle \left[\begin{{array}}{{{columns}}} {body} \end{{array}}\right]$"
+
+
+def _in_notebook(latex: str) -> str:
+    r"""LaTeX without the preamble of a write-up: MathJax sets \mathrm{\pi} upright."""
+    return latex.replace(r"\uppi", r"\mathrm{\pi}")
 
 
 class FormulaColumn(tuple[Expression, ...]):

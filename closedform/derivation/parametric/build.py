@@ -67,7 +67,9 @@ def _steps(
     if uncovered is not None:
         yield uncovered
     yield model_step(response)
-    yield parameters_step(response)
+    parameters = parameters_step(response)
+    if parameters is not None:
+        yield parameters
     yield characteristic_polynomial_step(response)
     letters = Letters(names_of(response))
     told: set[object] = set()
@@ -86,7 +88,8 @@ def _steps(
             yield definitions
         shared = False
         if branch.number == 0:
-            yield cases_step(response)
+            if response.model.field.free:
+                yield cases_step(response)
             made = list(exponential_steps(response, cases, letters))
             shared = any(step.kind == "shared_form" for step in made)
             yield from made

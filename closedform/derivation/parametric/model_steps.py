@@ -115,8 +115,11 @@ def _combination(
     return opened(sum_of(terms))
 
 
-def parameters_step(response: ParametricResponse) -> Step:
-    """Tabulate the parameters; give conditions, re-stated parameters and abbreviations."""
+def parameters_step(response: ParametricResponse) -> Step | None:
+    """Tabulate the parameters; give conditions, re-stated parameters and abbreviations.
+
+    None for a model that has no parameters, but the number pi.
+    """
     model, field = response.model, response.model.field
     restated = [Statement("restated", (Name(d.name), d.formula)) for d in model.restated]
     abbreviations = [
@@ -135,6 +138,8 @@ def parameters_step(response: ParametricResponse) -> Step:
         if c not in given and c not in of_parameters
     ]
     rows = [_row(field, p) for p in model.parameters]
+    if not (rows or restated or conditions or abbreviations):
+        return None
     facts = {
         "rows": rows,
         "units": any(row["unit"] for row in rows),

@@ -11,12 +11,13 @@ from collections.abc import Sequence
 
 from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.field import Scalar
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.algebra.sign_argument import (
     ByCells,
     ByCondition,
     ByExpansion,
     ByFactors,
+    ByPi,
     BySquares,
     ByTerms,
     Combined,
@@ -69,11 +70,11 @@ def reason_of(field: ParameterField, argument: SignArgument, *, deep: bool = Fal
     element = argument.element
     said = sign_statement(field, element, argument.sign)
     match argument.reason:
-        case Constant() | ByTerms() if len(field.names_in(element)) <= 1:
-            return [said]
-        case Constant():
-            return [said]
+        case Constant() | ByPi():
+            return _of_number(field, element, said)
         case ByTerms():
+            if len(field.names_in(element)) <= 1:
+                return [said]
             size = "positive" if argument.sign in ("positive", "nonnegative") else "negative"
             zero = " or zero" if argument.sign in ("nonnegative", "nonpositive") else ""
             return [said, f", as all its terms are {size}{zero}"]
@@ -99,6 +100,13 @@ def reason_of(field: ParameterField, argument: SignArgument, *, deep: bool = Fal
             return sentence
         case Undecided():
             raise ValueError(f"no argument says which sign {element} has")
+
+
+def _of_number(field: ParameterField, element: Scalar, said: Statement) -> Sentence:
+    terms = len(element.numer) + len(element.denom) if element else 0
+    return (
+        [said, ", by the digits of", Name(PI)] if field.holds_pi(element) and terms > 2 else [said]
+    )
 
 
 def _by_factors(

@@ -30,6 +30,7 @@ def verification_step(
         "rows": _gathered(_rows(whole, _told_of_the_first(records), response)),
         "full_rows": _rows(whole, records, response),
         "compact": True,
+        "open": bool(response.model.field.free),
     }
     return Step("verification", (), facts, depth="summary")
 

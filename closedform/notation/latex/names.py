@@ -41,6 +41,8 @@ OTHER_SPELLINGS = {"lamda": "lambda", "omicron": "o"}
 """`lamda` is the spelling Python users need for `lambda`; an omicron looks like an o."""
 
 IMAGINARY = "@i"
+THE_NUMBER = {"pi": r"\uppi"}
+"""Names that stand for numbers, upright; the preamble of a write-up defines their commands."""
 UP_TO = (
     (0.42, "i l t iota epsilon ."),
     (0.52, "0 1 2 3 4 5 6 7 8 9 c e g j o r s z I theta delta xi varsigma varepsilon zeta"),
@@ -161,6 +163,8 @@ def name_box(text: str, style: Style = Style.DISPLAY, extra: tuple[str, ...] = (
     """
     if text == IMAGINARY:
         return plain(r"\mathrm{i}", 0.3, style)
+    if text in THE_NUMBER:
+        return subscripted(plain(THE_NUMBER[text], 0.6, style), extra, style)
     parts = _parts(text)
     if parts is None:
         return subscripted(letter_box(text, style), extra, style)

@@ -66,16 +66,17 @@ _FLIPPED: dict[Sign, Sign] = {">": "<", ">=": "<=", "==": "==", "!=": "!="}
 
 
 def _of_one_parameter(field: ParameterField, element: Scalar) -> tuple[Scalar, Scalar, bool] | None:
-    """For a x + b with numbers a and b: x, -b/a, and whether a > 0."""
+    """For a x + b with numbers a and b, pi among them: x, -b/a, and whether a > 0."""
     names = field.names_in(element)
     if len(names) != 1 or not element.denom.is_ground:
         return None
     (name,) = names
-    slope = field.constant(field.derivative(element, name))
-    if slope is None:
+    slope = field.derivative(element, name)
+    sign = field.number_sign(slope)
+    if sign is None:
         return None
     x = field.symbol(name)
-    return x, x - element / field.scalar(slope), slope > 0
+    return x, x - element / slope, sign > 0
 
 
 def written_equation(field: ParameterField, name: str, value: Scalar) -> WrittenComparison:
@@ -122,7 +123,7 @@ def _comes_first(field: ParameterField, left: Scalar, right: Scalar) -> bool:
     """Whether `left` reads better on the left: fewer terms, then the parameter declared first."""
 
     def key(element: Scalar) -> tuple[object, ...]:
-        if not element or field.constant(element) is not None:
+        if field.number_sign(element) is not None:
             return (1, 0, ())
         monomials = element.numer.monoms()
         return (0, len(monomials), tuple(-e for e in monomials[0]))

@@ -9,10 +9,11 @@ from fractions import Fraction
 from flint import arb
 
 from closedform.algebra.enclosure import ball_of, certified_decimal
-from closedform.algebra.field import BaseField, Polynomial, base_field
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.field import BaseField, Polynomial
+from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.algebra.roots import enclosed_roots
 from closedform.algebra.surds import SurdSum
+from closedform.algebra.value_field import element_at, value_field
 from closedform.notation.evaluation import enclose
 from closedform.notation.expression import (
     Call,
@@ -63,12 +64,15 @@ class Root:
 
 
 def _surd_roots(field: BaseField, p: Polynomial) -> list[SurdSum]:
+    last, mean = field.number(p.nth(0)), field.number(p.nth(1))
+    if last is None or mean is None:
+        return []
     if p.degree() == 1:
-        return [-field.surds(p.nth(0))]
+        return [-last]
     if p.degree() != len("bc"):
         return []
-    half = field.surds(p.nth(1)) * SurdSum.rational(Fraction(-1, 2))
-    square = half * half - field.surds(p.nth(0))
+    half = mean * SurdSum.rational(Fraction(-1, 2))
+    square = half * half - last
     if field.sign(field.scalar(square)) < 0:
         return []
     root = square_root_of_surd(square)
@@ -77,7 +81,7 @@ def _surd_roots(field: BaseField, p: Polynomial) -> list[SurdSum]:
 
 @dataclass(frozen=True)
 class Known:
-    """Parameters and named quantities at one point of a case.
+    """Parameters and named quantities at one point of a case; the number pi is known by balls.
 
     `exact` holds the names whose value is a surd sum, `squares` others whose square is one;
     `definitions` says what the names are that are not in `exact`, in their order.
@@ -89,7 +93,8 @@ class Known:
 
     def balls(self) -> dict[str, arb]:
         """Return a ball for every name at FLINT's current precision."""
-        found = {name: ball_of(value) for name, value in self.exact.items()}
+        found = {PI: arb.pi()}
+        found |= {name: ball_of(value) for name, value in self.exact.items()}
         for name, definition in self.definitions.items():
             found[name] = (
                 definition.ball() if isinstance(definition, Root) else enclose(definition, found)
@@ -200,7 +205,7 @@ def known_at(field: ParameterField, case: Case, values: Mapping[str, SurdSum]) -
 
     Raises TooManyRootsError where a named root needs a field with too many square roots.
     """
-    known = Known({name: values[name] for name in field.parameters})
+    known = Known({name: values[name] for name in field.free})
     for quantity in case.quantities:
         name, definition = quantity.name, quantity.formula
         if definition is not None:
@@ -224,7 +229,6 @@ def _root_at(
 ) -> Root:
     if root is None:
         raise TypeError("a quantity without a formula is a root")
-    numbers = [field.exact_at(c, values) for c in root.polynomial]
-    base = base_field(numbers)
-    polynomial = base.polynomial([base.scalar(number) for number in numbers])
+    base = value_field(field, root.polynomial, values)
+    polynomial = base.polynomial([element_at(field, c, values, base) for c in root.polynomial])
     return Root(base, polynomial, root.which)

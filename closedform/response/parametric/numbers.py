@@ -13,7 +13,6 @@ from flint import arb
 
 from closedform.algebra.domain import Comparison
 from closedform.algebra.enclosure import ball_of, certified_decimals
-from closedform.algebra.field import base_field
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.sign_argument import relation_values
 from closedform.algebra.surds import SurdSum
@@ -88,12 +87,15 @@ class NumbersAt:
 def numbers_of(response: ParametricResponse, *, digits: int) -> tuple[NumbersAt, ...]:
     """Return the numbers for the values of the model, if it has any, and each row of its table.
 
+    A model in which pi is the only name has one set of values, which is empty.
     The instants are those of the model, or six that suit the first of the value sets.
 
     Raises:  ValuesNotCoveredError; UnsettledError where `digits` digits cannot be settled.
     """
     model = response.model
     sets = (*(() if model.values is None else (model.values,)), *model.value_sets)
+    if not model.field.free:
+        sets = (ValueSet("", ()),)
     if not sets:
         return ()
     first, *others = sets
@@ -113,11 +115,11 @@ def numbers_at(
     case = case_at(response, given)
     known = known_at(field, case, values)
     columns = (case.state, *(() if case.output is None else (case.output,)))
-    functions = functions_at(field, columns, values)
+    functions = functions_at(field, columns, values, times)
     instants = tuple(times) or suitable_times(functions.roots)
     return NumbersAt(
         given.label,
-        tuple((name, values[name]) for name in field.parameters),
+        tuple((name, values[name]) for name in field.free),
         case.number,
         tuple(
             QuantityAt(q.name, known.exact.get(q.name), known.decimal(Name(q.name), digits))
@@ -140,17 +142,13 @@ def case_at(response: ParametricResponse, given: ValueSet) -> Case:
         ]
         if all(_holds(field, c, values) for c in (*case.domain.conditions, *equations)):
             return case
-    told = tuple((name, plain(surd_formula(values[name]))) for name in field.parameters)
+    told = tuple((name, plain(surd_formula(values[name]))) for name in field.free)
     raise ValuesNotCoveredError(response.model.name, given.label, told)
 
 
 def _holds(field: ParameterField, comparison: Comparison, values: Mapping[str, SurdSum]) -> bool:
     """Whether a comparison holds at a point; it does not where it has no value."""
-    if not field.exact_at(field.of_polynomial(comparison.element.denom), values).terms:
-        return False
-    value = field.exact_at(comparison.element, values)
-    numbers = base_field([value])
-    return numbers.sign(numbers.scalar(value)) in relation_values(comparison.relation)
+    return field.sign_at(comparison.element, values) in relation_values(comparison.relation)
 
 
 def _row(

@@ -2,42 +2,46 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from fractions import Fraction
-from typing import Any
 
-from flint import arb, fmpq, fmpq_poly
+from flint import arb
 
 from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.enclosure import ball_of
-from closedform.algebra.field import Scalar, rational
-from closedform.algebra.parameter_field import ParameterField
-from closedform.algebra.sample import holds_at
-from closedform.algebra.surds import SurdSum
+from closedform.algebra.field import Scalar
+from closedform.algebra.parameter_field import PI, ParameterField
+from closedform.algebra.roots import enclosed_roots
+from closedform.algebra.sample import PointValue, holds_at
+from closedform.algebra.squares import coefficients_in
 from closedform.response.parametric.case import Case
 
-__all__ = ["Point", "border_points", "case_points", "points_beside"]
+__all__ = ["Point", "border_points", "case_points", "point_of", "points_beside"]
 
 
 @dataclass(frozen=True)
 class Point:
-    """A value for every parameter: numbers, and at most one root of a polynomial over Q.
+    """A value for every parameter: numbers, and at most one root of a polynomial.
 
-    `root` is (name, coefficients highest first, place among the real roots from 0); `derived`
-    are parameters that equations give by the others, as elements of `field`.
+    `root` is (name, coefficients highest first, place among the real roots from 0), the
+    coefficients numbers of `field`: rational, or in pi alone; `derived` are parameters that
+    equations give by the others, or that have the number pi in them, as elements of `field`.
     """
 
     values: tuple[tuple[str, Fraction], ...]
-    root: tuple[str, tuple[Fraction, ...], int] | None = None
+    root: tuple[str, tuple[Scalar, ...], int] | None = None
     derived: tuple[tuple[str, Scalar], ...] = ()
     field: ParameterField | None = None
 
     def balls(self) -> dict[str, arb]:
-        """Return a ball for every parameter at FLINT's current precision."""
+        """Return a ball for every name of the field, pi among them, at the current precision."""
         found = {name: ball_of(value) for name, value in self.values}
-        if self.root is not None:
+        if self.field is not None and PI in self.field.parameters:
+            found[PI] = arb.pi()
+        if self.root is not None and self.field is not None:
             name, coefficients, place = self.root
-            found[name] = _real_roots(coefficients)[place]
+            found[name] = _real_roots(self.field, coefficients)[place]
         for name, element in self.derived:
             if self.field is not None:
                 found[name] = self.field.enclose_at(element, found)
@@ -47,7 +51,9 @@ class Point:
         texts = [f"{name} = {value}" for name, value in self.values]
         if self.root is not None:
             texts.append(f"{self.root[0]} a root of its equation")
-        texts += [f"{name} from the others" for name, _ in self.derived]
+        for name, element in self.derived:
+            number = self.field is not None and not self.field.names_in(element)
+            texts.append(f"{name} = {_told(element)}" if number else f"{name} from the others")
         return ", ".join(texts)
 
 
@@ -71,22 +77,36 @@ def border_points(field: ParameterField, case: Case) -> list[Point]:
     """Return points of a case at which one parameter is 0, where the case allows it."""
     found = []
     for values in case.domain.sample(1, 5):
-        for name in field.parameters:
+        for name in field.free:
             if name in case.branch.values:
                 continue
-            moved = {**values, name: Fraction(0)}
+            moved: dict[str, PointValue] = {**values, name: Fraction(0)}
             if all(holds_at(condition, moved) for condition in case.domain.conditions):
                 found.append(_completed(field, case, moved))
     return found
 
 
-def _completed(field: ParameterField, case: Case, values: dict[str, Fraction]) -> Point:
+def _completed(field: ParameterField, case: Case, values: dict[str, PointValue]) -> Point:
     """Put in what the equations of the branch say."""
-    exact = {name: SurdSum.rational(value) for name, value in values.items()}
-    whole = dict(values)
-    for name, element in case.branch.values.items():
-        whole[name] = field.exact_at(element, exact).as_fraction()
-    return Point(tuple((name, whole[name]) for name in field.parameters))
+    whole = {n: field.scalar(v) if isinstance(v, Fraction) else v for n, v in values.items()}
+    whole |= {n: field.substituted(e, whole) for n, e in case.branch.values.items()}
+    return point_of(field, whole)
+
+
+def point_of(field: ParameterField, values: Mapping[str, Scalar]) -> Point:
+    """Return the point at which the parameters have these values, numbers of the field."""
+    plain, derived = [], []
+    for name in field.free:
+        value = field.constant(values[name])
+        if value is None:
+            derived.append((name, values[name]))
+        else:
+            plain.append((name, value))
+    return Point(tuple(plain), None, tuple(derived), field)
+
+
+def _told(element: Scalar) -> str:
+    return str(element).replace("**", "^")
 
 
 def _on_a_curve(field: ParameterField, case: Case, count: int, seed: int) -> list[Point]:
@@ -109,23 +129,25 @@ def _on_a_curve(field: ParameterField, case: Case, count: int, seed: int) -> lis
 
 
 def _solved(
-    field: ParameterField, case: Case, element: Scalar, values: dict[str, Fraction], name: str
+    field: ParameterField, case: Case, element: Scalar, values: dict[str, PointValue], name: str
 ) -> list[Point]:
     """The points with these values at which the equation holds and all conditions too."""
-    put = {n: field.scalar(v) for n, v in values.items() if n != name}
+    given = case.branch.values
+    put = {n: field.scalar(v) for n, v in values.items() if n != name and isinstance(v, Fraction)}
     left = field.substituted(field.of_polynomial(element.numer), put)
-    place = field.parameters.index(name)
-    coefficients: dict[int, Fraction] = {}
-    for monomial, c in left.numer.iterterms():
-        coefficients[monomial[place]] = rational(c) / rational(left.denom.LC)
-    degree = max(coefficients, default=0)
-    if degree < 1:
+    if field.names_in(left) - {name}:
         return []
-    highest_first = tuple(coefficients.get(k, Fraction(0)) for k in range(degree, -1, -1))
+    parts = coefficients_in(left.numer, field.parameters.index(name))
+    if len(parts) < 2:
+        return []
+    highest_first = tuple(field.of_polynomial(c) / left.denom for c in reversed(parts))
     found = []
-    for k in range(len(_real_roots(highest_first))):
-        given = case.branch.values
-        rest = tuple((n, v) for n, v in values.items() if n != name and n not in given)
+    for k in range(len(_real_roots(field, highest_first))):
+        rest = tuple(
+            (n, v)
+            for n, v in values.items()
+            if n != name and n not in given and isinstance(v, Fraction)
+        )
         point = Point(rest, (name, highest_first, k), tuple(given.items()), field)
         if _admissible(field, case.domain.conditions, point):
             found.append(point)
@@ -144,11 +166,9 @@ def _admissible(field: ParameterField, conditions: tuple[Comparison, ...], point
     return True
 
 
-def _real_roots(coefficients: tuple[Fraction, ...]) -> list[arb]:
-    """The real roots of a polynomial over Q, highest coefficient first, growing."""
-    numbers = [fmpq(c.numerator, c.denominator) for c in reversed(coefficients)]
-    found: list[arb] = []
-    for factor, _ in fmpq_poly(numbers).numer().factor()[1]:
-        pairs: Any = factor.complex_roots()  # with multiplicities, which the stubs leave out
-        found += [root.real for root, _ in pairs if root.imag == 0]
+def _real_roots(field: ParameterField, coefficients: tuple[Scalar, ...]) -> list[arb]:
+    """The real roots of a polynomial in numbers, highest coefficient first, growing."""
+    found = []
+    for factor, _ in field.polynomial(coefficients).factor_list()[1]:
+        found += [z.real for z in enclosed_roots(field, factor.monic()) if z.imag == 0]
     return sorted(found, key=lambda ball: ball.mid())

@@ -95,8 +95,8 @@ def _equations(domain: ParameterDomain, branch: Branch) -> list[WrittenCompariso
 
 def _solved_for_one(field: ParameterField, element: Scalar) -> dict[str, Scalar]:
     """The value of the last parameter in which an equation is linear with a number before it."""
-    for name in reversed(field.parameters):
+    for name in reversed(field.free):
         slope = field.derivative(element, name)
-        if slope and field.constant(slope) is not None:
+        if slope and field.number_sign(slope) is not None:
             return {name: field.symbol(name) - element / slope}
     return {}

@@ -9,7 +9,7 @@ from typing import Literal
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.lowest_terms import fraction
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parameter_field import PI, ParameterField
 
 __all__ = ["Kernel", "Term", "apart", "gathered", "separable", "separated"]
 
@@ -51,7 +51,7 @@ def separable(field: ParameterField, terms: Sequence[Term]) -> list[str]:
             used |= field.names_in(element)
     found = []
     for place, name in enumerate(field.parameters):
-        if name in used:
+        if name in used or name == PI:
             continue
         degrees = [{m[place] for m in term.amount.numer.itermonoms()} for term in terms]
         if set().union(*degrees) == {0, 1} and any(len(d) == 2 for d in degrees):

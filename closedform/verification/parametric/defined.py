@@ -119,7 +119,7 @@ def _divisors(expression: Expression) -> Iterator[Expression]:
 
 
 def _factors(field: ParameterField, element: Scalar) -> Iterator[Scalar]:
-    if field.constant(element) is None:
+    if field.number_sign(element) is None:
         for polynomial, _ in field.factored(element).factors:
             yield field.of_polynomial(polynomial)
 

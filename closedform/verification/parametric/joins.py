@@ -13,10 +13,9 @@ from fractions import Fraction
 from flint import arb, ctx
 
 from closedform.algebra.enclosure import ball_of
-from closedform.algebra.surds import SurdSum
 from closedform.notation import enclose
 from closedform.response.parametric.case import Case
-from closedform.response.parametric.points import Point, case_points
+from closedform.response.parametric.points import Point, case_points, point_of
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.cover import applying_cases
 from closedform.verification.parametric.defined import undefined_name
@@ -47,15 +46,15 @@ def join_check(response: ParametricResponse, case: Case) -> Iterator[Check]:
     if moved is None or not points or points[0].root is not None:
         return
     point = points[0]
-    base = dict(point.values)
+    field = response.model.field
+    base = {n: field.scalar(v) for n, v in point.values} | dict(point.derived)
     previous: arb | None = None
     neighbour: Case | None = None
     for step in STEPS:
-        value = base[moved] * (1 + Fraction(1, 2**step)) + (
-            0 if base[moved] else Fraction(1, 2**step)
-        )
-        near = Point(tuple((n, value if n == moved else v) for n, v in point.values))
-        found = applying_cases(response, {n: SurdSum.rational(v) for n, v in near.values})
+        small = field.scalar(Fraction(1, 2**step))
+        values = base | {moved: base[moved] * (1 + small) if base[moved] else small}
+        near = point_of(field, values)
+        found = applying_cases(response, values)
         if len(found) != 1 or found[0].number == case.number:
             return  # not covered, or no border in this direction
         neighbour = found[0]
@@ -90,9 +89,7 @@ def _parameter_to_move(response: ParametricResponse, case: Case) -> str | None:
     field = response.model.field
     for condition in case.domain.conditions:
         if condition.relation == "=":
-            return next(
-                n for n in reversed(field.parameters) if n in field.names_in(condition.element)
-            )
+            return next(n for n in reversed(field.free) if n in field.names_in(condition.element))
     return None
 
 

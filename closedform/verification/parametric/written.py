@@ -77,12 +77,13 @@ def formula_check(response: ParametricResponse, case: Case) -> Check:
     )
     listed = "; ".join(map(str, points))
     also = f" and {len(border)} more with a zero" if border else ""
+    at = f"at {len(points)} points {where} ({listed}){also}, " if model.field.free else ""
     return check_of(
         _ITEM,
         findings,
         f"{len(parsed)} formulas and the definitions of their names, read back from their text, "
-        f"agree with the exponential of A by ball arithmetic {AGREED} at {len(points)} points "
-        f"{where} ({listed}){also}, at two instants each",
+        f"agree with the exponential of A by ball arithmetic {AGREED} {at}at two instants"
+        f"{' each' if at else ''}",
     )
 
 

@@ -8,6 +8,7 @@ import pytest
 from flint import arb, ctx, fmpq
 
 import closedform
+from closedform.algebra.parameter_field import ParameterField
 from closedform.response.parametric.points import Point, border_points, case_points
 from closedform.response.parametric.response import respond_in_cases
 from tests.response.parametric.solved import MODELS, response_to
@@ -67,7 +68,9 @@ def test_a_curve_without_known_rational_points_has_points_that_are_roots() -> No
 
 
 def test_a_root_is_as_sharp_as_the_precision_asks() -> None:
-    point = Point((("a", Fraction(1, 3)),), ("b", (Fraction(1), Fraction(0), Fraction(-2)), 1))
+    field = ParameterField(parameters=("a", "b"))
+    coefficients = tuple(map(field.scalar, (1, 0, -2)))
+    point = Point((("a", Fraction(1, 3)),), ("b", coefficients, 1), field=field)
     for bits in (64, 640):
         with ctx.workprec(bits):
             balls = point.balls()

@@ -9,6 +9,7 @@ from typing import Any
 from flint import acb, acb_mat, arb
 
 from closedform.algebra.enclosure import ball_of
+from closedform.algebra.parameter_field import PI
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.parametric.proof.ground import Ground, Said
 from closedform.derivation.parametric.proof.model import comparison, formula_of
@@ -35,8 +36,8 @@ class Given:
     values: tuple[tuple[str, SurdSum], ...]
 
     def balls(self) -> dict[str, arb]:
-        """Return a ball for every parameter at FLINT's current precision."""
-        return {name: ball_of(value) for name, value in self.values}
+        """Return a ball for every parameter, and for pi, at FLINT's current precision."""
+        return {PI: arb.pi(), **{name: ball_of(value) for name, value in self.values}}
 
     def __str__(self) -> str:
         return "the values given"
