@@ -6,9 +6,11 @@ from collections.abc import Mapping, Sequence
 
 from closedform.algebra.surds import SurdSum
 from closedform.errors import Place
+from closedform.model.driven.building import driven_model
+from closedform.model.driven.model import DrivenModel
 from closedform.model.entries import kind_of, number_from
-from closedform.model.errors import LaterKeyError, WrongKindError
-from closedform.model.keys import DRIVEN_KEYS, check_keys, is_driven, uses_pi
+from closedform.model.errors import WrongKindError
+from closedform.model.keys import check_keys, is_driven, uses_pi
 from closedform.model.model import Model, Output
 from closedform.model.parametric import ParametricModel
 from closedform.model.parametric_building import parametric_model
@@ -31,7 +33,7 @@ NOWHERE = Place()
 
 def model_from(
     mapping: Mapping[str, object], *, name: str, place: Place = NOWHERE
-) -> Model | ParametricModel:
+) -> Model | ParametricModel | DrivenModel:
     """Return the model stated by a mapping with the keys of a model file.
 
     With the key `parameters` it is a ParametricModel.
@@ -68,7 +70,7 @@ def system(  # noqa: PLR0913  the keys of a model file, each by its name
     abbreviations: Mapping[str, str] | None = None,
     values: Sequence[Mapping[str, object]] = (),
     name: str = "system",
-) -> Model | ParametricModel:
+) -> Model | ParametricModel | DrivenModel:
     """Return the model x' = matrix x, x(0) = initial, from Python values.
 
     Numbers are as in `model_from`; the states are called x1, x2, … unless named.  With
@@ -101,13 +103,14 @@ def system(  # noqa: PLR0913  the keys of a model file, each by its name
     return model_from({**mapping, **given}, name=name)
 
 
-def build(mapping: Mapping[str, object], name: str, source: Source) -> Model | ParametricModel:
+def build(
+    mapping: Mapping[str, object], name: str, source: Source
+) -> Model | ParametricModel | DrivenModel:
     """Return the model stated by a mapping; errors give the lines of `source`."""
     check_keys(mapping, source)
-    if is_driven(mapping):
-        key = next(key for key in mapping if key in DRIVEN_KEYS)
-        raise LaterKeyError(source.at_name(key), key)
     heading = heading_of(mapping, name, source)
+    if is_driven(mapping):
+        return driven_model(mapping, heading, source)
     if "parameters" in mapping or uses_pi(mapping):
         return parametric_model(mapping, heading, source)
     return _numeric(mapping, heading, source)

@@ -41,7 +41,6 @@ ONLY: dict[str, tuple[str, ...]] = {
 INITIAL = {"initial": "initial = [1, 0]"}
 OPTIONAL = ("summary", "time", "outputs", "times")
 DRIVEN = ("inputs", "input_matrix", "start", "at_points")
-DRIVEN_KEYS = (*DRIVEN, "equations", "mass", "damping", "stiffness")
 PARAMETRIC = ("parameters", "conditions", "substitute", "abbreviations", "values")
 LATER = ("document",)
 KNOWN = (

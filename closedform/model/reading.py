@@ -11,6 +11,7 @@ from typing import Any
 
 from closedform.errors import Place
 from closedform.model.building import build
+from closedform.model.driven.model import DrivenModel
 from closedform.model.entries import DecimalText
 from closedform.model.file_errors import (
     USUAL_LINES,
@@ -52,11 +53,11 @@ LONG_DOTTED_KEY = re.compile(
 )
 
 
-def load(path: str | os.PathLike[str]) -> Model | ParametricModel:
+def load(path: str | os.PathLike[str]) -> Model | ParametricModel | DrivenModel:
     """Return the model stated in a TOML file; its name is the stem of the file's name.
 
     Decimals are read as exact rationals: 0.1 is 1/10.  A file with `parameters` gives a
-    ParametricModel.
+    ParametricModel, one with equations, masses or inputs a DrivenModel.
 
     Raises:  the errors of ``closedform.model`` and ``closedform.notation``; all of them are
              InputError.

@@ -22,11 +22,14 @@ class JetRow:
 
 @dataclass(frozen=True)
 class JetRows:
-    """What reads jets off a state form; `successors` gives the place of an input's derivative."""
+    """What reads jets off a state form.
+
+    `successors` gives the place of the derivative of an input, None where that is zero.
+    """
 
     field: BaseField
     reduction: Reduction
-    successors: Mapping[int, int]
+    successors: Mapping[int, int | None]
 
     @cached_property
     def _rates(self) -> list[JetRow]:
@@ -69,7 +72,11 @@ class JetRows:
         if not all(place in self.successors for place in row.of_inputs):
             return None
         states: dict[int, Scalar] = {}
-        inputs = {self.successors[place]: weight for place, weight in row.of_inputs.items()}
+        inputs: dict[int, Scalar] = {}
+        for place, weight in row.of_inputs.items():
+            above = self.successors[place]
+            if above is not None:
+                self._add(inputs, {above: weight}, self.field.domain.one)
         for place, weight in row.of_states.items():
             for total, part in (
                 (states, self._rates[place].of_states),

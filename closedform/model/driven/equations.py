@@ -1,0 +1,128 @@
+"""Models stated by typed equations."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+from typing import Generic, TypeVar
+
+from closedform.errors import Place
+from closedform.model.driven.balances import Shifted, linear_balance, unknowns_of
+from closedform.model.driven.columns import InputColumns
+from closedform.model.driven.numerals import Numerals
+from closedform.model.driven.roles import Roles
+from closedform.model.driven.signal_reading import signal_of
+from closedform.model.driven.statement import Row, Statement
+from closedform.model.entries import kind_of
+from closedform.model.errors import TooManyStatesError, WrongKindError
+from closedform.model.naming import MOST_STATES, named_in
+from closedform.model.statement import array_of
+from closedform.notation.equation import read_equation
+from closedform.notation.expression import Expression, Negation, Sum
+from closedform.notation.terms import negated
+
+__all__ = ["stated_by_equations"]
+
+T = TypeVar("T")
+Sides = tuple[Expression, Expression]
+
+
+def stated_by_equations(
+    value: object, given: tuple[str, ...], numerals: Numerals[T], columns: InputColumns[T]
+) -> Statement[T]:
+    """Return what an array of equations states; `given` are the unknowns, if they are declared.
+
+    Names of unknowns that are found become names of the model; functions of the time and
+    inputs become columns.
+
+    Raises:  the errors of ``balance_errors`` and ``signal_errors``, those of names, and what
+             the reader of equations and the arithmetic raise.
+    """
+    source = numerals.source
+    texts = _texts(value, numerals)
+    functions = frozenset(given) | columns.names if given else None
+    reading = _Equations(numerals, columns, functions)
+    sides = [reading.sides(text, f"equations[{k}]") for k, text in enumerate(texts, start=1)]
+    known = numerals.constants | columns.names
+    unknowns = unknowns_of(sides, known, columns.time, given or None, source)
+    if not given:
+        if len(unknowns) > MOST_STATES:
+            raise TooManyStatesError(source.at("equations"), len(unknowns), MOST_STATES)
+        numerals.names = named_in(unknowns, "equations", "an unknown", numerals.names, source)
+    roles = Roles(unknowns, columns.names, columns.time)
+    rows = tuple(
+        reading.row(text, pair, roles, f"equations[{k}]")
+        for k, (text, pair) in enumerate(zip(texts, sides, strict=True), start=1)
+    )
+    return Statement("equations", unknowns, rows, frozenset() if given else frozenset(unknowns))
+
+
+def _texts(value: object, numerals: Numerals[T]) -> list[str]:
+    source = numerals.source
+    expected = "an array of equations in quotation marks"
+    array = array_of(value, expected, "equations", source)
+    if not array:
+        raise WrongKindError(source.at("equations"), expected, "an empty array")
+    if len(array) > MOST_STATES:
+        raise TooManyStatesError(source.at("equations"), len(array), MOST_STATES)
+    texts = []
+    for k, text in enumerate(array, start=1):
+        if not isinstance(text, str):
+            place = source.at(f"equations[{k}]")
+            raise WrongKindError(place, "an equation in quotation marks", kind_of(text))
+        texts.append(text)
+    return texts
+
+
+def _turned(literal: Expression) -> tuple[Expression, Fraction]:
+    """A function of the time without a minus sign in front, and the sign."""
+    if isinstance(literal, Negation):
+        return literal.operand, Fraction(-1)
+    if isinstance(literal, Sum) and isinstance(literal.terms[0], Negation):
+        return Sum(tuple(map(negated, literal.terms))), Fraction(-1)
+    return literal, Fraction(1)
+
+
+class _Equations(Generic[T]):
+    """What stays the same while equations are read."""
+
+    def __init__(
+        self, numerals: Numerals[T], columns: InputColumns[T], functions: frozenset[str] | None
+    ) -> None:
+        self.numerals, self.columns, self.functions = numerals, columns, functions
+
+    def sides(self, text: str, key: str) -> Sides:
+        def work(place: Place) -> Sides:
+            return read_equation(
+                text,
+                time=self.columns.time,
+                constants=self.numerals.constants,
+                functions=self.functions,
+                place=place,
+            )
+
+        found = self.numerals.read(text, key, work)
+        self.numerals.note(*found)
+        return found
+
+    def row(self, text: str, sides: Sides, roles: Roles, key: str) -> Row[T]:
+        numerals, columns = self.numerals, self.columns
+
+        def work(place: Place) -> Row[T]:
+            balance = linear_balance(*sides, roles, numerals.arithmetic, place, text)
+            inputs = [
+                (self._place(shifted, place), weight) for shifted, weight in balance.of_inputs
+            ]
+            if balance.literal is not None:
+                formula, sign = _turned(balance.literal)
+                signal = signal_of(
+                    formula, columns.time, numerals.arithmetic, place, numerals.signs
+                )
+                if signal.bursts or signal.impulses:
+                    weight = numerals.arithmetic.number(sign)
+                    inputs.append((columns.literal(formula, signal), weight))
+            return Row(" ".join(text.split()), *sides, balance.of_unknowns, tuple(inputs), key)
+
+        return numerals.read(text, key, work)
+
+    def _place(self, shifted: Shifted[T], place: Place) -> int:
+        return self.columns.of(shifted.name, shifted.order, shifted.delay, place)
