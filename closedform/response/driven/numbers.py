@@ -1,0 +1,196 @@
+"""A driven solution with parameters in numbers: values put into the case that holds.
+
+Nothing is solved again.  Which case holds is decided exactly, and every decimal is settled
+by ball arithmetic on the written formulas, or exact.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+from flint import arb
+
+from closedform.algebra.enclosure import ball_of, certified_decimals
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.surds import SurdSum
+from closedform.model.parametric import ParametricModel, ValueSet
+from closedform.notation.evaluation import enclose
+from closedform.notation.expression import ZERO, Expression, Name, product
+from closedform.notation.terms import opened, sum_of
+from closedform.response.driven.composition import constant_formula, element_formula, shifted
+from closedform.response.driven.exact_sum import exact_value
+from closedform.response.driven.functions import Interval
+from closedform.response.driven.in_field import InField, Spot, in_field
+from closedform.response.driven.instants import suitable_instants
+from closedform.response.driven.period_formulas import PeriodicSolution
+from closedform.response.driven.response import DrivenResponse, DrivenSolution
+from closedform.response.parametric.in_numbers import InNumbers, in_numbers
+from closedform.response.parametric.known import Known, known_at
+from closedform.response.parametric.numbers import QuantityAt, case_at
+from closedform.response.parametric.response import ParametricResponse
+from closedform.response.sampling import surd_decimal
+
+__all__ = ["DrivenNumbersAt", "driven_numbers_at", "driven_numbers_of"]
+
+
+@dataclass(frozen=True)
+class DrivenNumbersAt:
+    """A driven response at one value for each parameter.
+
+    `case` is the place of the case that holds, from 0.  `instants` are the start and the
+    switchings, in numbers.  Shapes: `pieces` has a formula in the time alone for each
+    interval and, in it, each row of the model; `rows` has a decimal for each of `times`
+    and, in it, each row.
+    """
+
+    label: str
+    values: tuple[tuple[str, SurdSum], ...]
+    case: int
+    quantities: tuple[QuantityAt, ...]
+    instants: tuple[InNumbers, ...]
+    pieces: tuple[tuple[InNumbers, ...], ...]
+    times: tuple[SurdSum, ...]
+    rows: tuple[tuple[str, ...], ...]
+
+
+def driven_numbers_of(response: DrivenResponse, *, digits: int) -> tuple[DrivenNumbersAt, ...]:
+    """Return the numbers for the values of the model, if it has any, and each row of its table.
+
+    A model in which pi is the only name has one set of values, which is empty.  The instants
+    are those of the model; or such as suit the first of the value sets, if no switching
+    hangs on a parameter; or such as suit each.
+
+    Raises:  ValuesNotCoveredError; UnsettledError where `digits` digits cannot be settled.
+    """
+    model, stacked = response.model, response.model.stacked
+    if not isinstance(stacked, ParametricModel):
+        return ()
+    field = stacked.field
+    sets = (*(() if stacked.values is None else (stacked.values,)), *stacked.value_sets)
+    if not field.free:
+        sets = (ValueSet("", ()),)
+    times: tuple[SurdSum, ...] = model.times or stacked.times
+    fixed = not any(field.names_in(at) for at in (model.start, *model.timeline))
+    found: list[DrivenNumbersAt] = []
+    for given in sets:
+        found.append(driven_numbers_at(response, given, digits=digits, times=times))
+        if fixed:
+            times = found[0].times
+    return tuple(found)
+
+
+def driven_numbers_at(
+    response: DrivenResponse, given: ValueSet, *, digits: int, times: Sequence[SurdSum] = ()
+) -> DrivenNumbersAt:
+    """Return the numbers at one value for each parameter; `times` as given, or suitable ones.
+
+    Raises:  ValuesNotCoveredError, UnsettledError, TooManyRootsError; TypeError for a model
+             without parameters.
+    """
+    stacked, model = response.stacked, response.model
+    if not isinstance(stacked, ParametricResponse):
+        raise TypeError("a model without parameters has its numbers already")
+    field, values = stacked.model.field, dict(given.values)
+    case = case_at(stacked, given)
+    solution = response.solutions[case.number]
+    known = known_at(field, case, values)
+    parts = (solution.functions, solution.periods)
+    instants = tuple(times) or suitable_instants(in_field(field, *parts, values=values))
+    exact = in_field(field, *parts, values=values, times=instants)
+    writer = _Writer(field, solution, known, digits)
+    return DrivenNumbersAt(
+        given.label,
+        tuple((name, values[name]) for name in field.free),
+        case.number,
+        tuple(
+            QuantityAt(q.name, known.exact.get(q.name), known.decimal(Name(q.name), digits))
+            for q in case.quantities
+        ),
+        tuple(writer.number(interval.start) for interval in solution.functions.intervals),
+        tuple(
+            tuple(writer.formula(row, interval) for row in range(len(model.rows)))
+            for interval in solution.functions.intervals
+        ),
+        instants,
+        tuple(_row(solution, known, exact, t, digits) for t in instants),
+    )
+
+
+@dataclass(frozen=True)
+class _Writer:
+    """Writes a solution with numbers in place: each column, then its origin and constant."""
+
+    field: ParameterField
+    solution: DrivenSolution
+    known: Known
+    digits: int
+
+    def number(self, element: object) -> InNumbers:
+        """Return an element of the field as a number."""
+        return self._in_numbers(element_formula(self.field, element))
+
+    def formula(self, row: int, interval: Interval) -> InNumbers:
+        """Return what an interval gives for a row."""
+        time = self.solution.model.time
+        terms, rounded = [], False
+        for summand in interval.summands:
+            column = self.solution.columns[row][summand.place]
+            if column == ZERO:
+                continue
+            constant = constant_formula(self.field, summand.constant)
+            weighted = column if constant is None else product((constant, column))
+            written = self._in_numbers(weighted)
+            origin = self.number(summand.origin)
+            moved = shifted(written.formula, time, origin.formula)
+            rounded |= written.rounded or (origin.rounded and moved != written.formula)
+            terms.append(moved)
+        standing = [term for term in terms if term != ZERO]
+        return InNumbers(opened(sum_of(standing)) if standing else ZERO, rounded)
+
+    def _in_numbers(self, formula: Expression) -> InNumbers:
+        return in_numbers(formula, self.known, self.solution.model.time, self.digits)
+
+
+def _row(
+    solution: DrivenSolution, known: Known, exact: InField, t: SurdSum, digits: int
+) -> tuple[str, ...]:
+    """The rows at one instant, those that are algebraic numbers exactly."""
+    spots = exact.spots_at(t)
+    rows = range(len(solution.model.rows))
+    found = [exact_value(exact, row, spots, t) for row in rows]
+
+    def balls() -> list[arb]:
+        at = {**known.balls(), solution.model.time: ball_of(t)}
+        own = solution.pieces[spots[0].interval]
+        totals = [enclose(own[row], at) if found[row] is None else arb(0) for row in rows]
+        for place, periodic in enumerate(solution.periodic, start=1):
+            more, here = _periodic(periodic, exact, place, spots, at, t)
+            for row in rows:
+                if more and found[row] is None:
+                    totals[row] += enclose(more[row], here)
+        return [totals[row] for row in rows if found[row] is None]
+
+    decimals = iter(certified_decimals(balls, digits))
+    return tuple(next(decimals) if e is None else surd_decimal(e, digits) for e in found)
+
+
+def _periodic(
+    periodic: PeriodicSolution,
+    exact: InField,
+    place: int,
+    spots: Sequence[Spot],
+    at: Mapping[str, arb],
+    t: SurdSum,
+) -> tuple[tuple[Expression, ...], Mapping[str, arb]]:
+    """The formulas of what inputs that repeat add at t, none before they begin, and their names."""
+    own = [spot for spot in spots if spot.part == place]
+    if not own:
+        return (), at
+    last = own[-1]
+    if last.interval >= len(periodic.stretches):
+        return periodic.after or (), at
+    field, part = exact.field, exact.parts[place]
+    begun = field.enclose(part.intervals[0].start + (part.period or 0) * field.scalar(last.shift))
+    names = {periodic.number: arb(last.shift + 1), periodic.local: ball_of(t) - begun}
+    return periodic.stretches[last.interval].rows, {**at, **names}
