@@ -2,7 +2,8 @@
 
 It shares nothing with the package's reader of formulas, so that what the package writes
 can be held against something.  Read are + - * / ^, brackets, whole numbers, names and the
-functions; a decimal, a/b*c, an unknown name and anything else is refused.
+functions; a decimal, a/b*c, an unknown name and anything else is refused.  A name `pi`
+without a value is the number.
 """
 
 from __future__ import annotations
@@ -19,6 +20,7 @@ from typing import Any
 from flint import arb, fmpq
 
 __all__ = [
+    "DRIVEN_FUNCTIONS",
     "FUNCTIONS",
     "PUBLISHED_FUNCTIONS",
     "Number",
@@ -28,6 +30,7 @@ __all__ = [
     "exact_value",
     "names_in",
     "parse",
+    "step",
     "value",
 ]
 
@@ -35,6 +38,8 @@ Number = Fraction | arb
 FUNCTIONS = ("exp", "sin", "cos", "sinh", "cosh", "sqrt")
 PUBLISHED_FUNCTIONS = (*FUNCTIONS, "log")
 """What published statements use beside the functions of a record."""
+DRIVEN_FUNCTIONS = (*FUNCTIONS, "step", "delta")
+"""What formulas of a driven model may have in them, too; delta has no value."""
 TOKEN = re.compile(r"\s*([A-Za-z_]\w*|\d+|[-+*/^()])")
 
 
@@ -141,6 +146,8 @@ def value(tree: Tree, values: Mapping[str, Number]) -> Number:
     if tree.kind == "number":
         return Fraction(int(tree.leaf))
     if tree.kind == "name":
+        if tree.leaf == "pi" and "pi" not in values:
+            return arb.pi()
         if tree.leaf not in values:
             raise UnreadableError(f"{tree.leaf} has no value here")
         return values[tree.leaf]
@@ -166,6 +173,10 @@ def _power(base: Number, exponent: Number) -> Number:
 
 
 def _function(name: str, argument: Number) -> Number:
+    if name == "step":
+        return step(argument)
+    if name == "delta":
+        raise UnreadableError("an impulse has no value")
     if isinstance(argument, Fraction):
         if argument == 0:
             return Fraction(int(name in ("exp", "cos", "cosh")))
@@ -175,6 +186,15 @@ def _function(name: str, argument: Number) -> Number:
                 return root
     found: arb = getattr(ball_of(argument), name)()
     return found
+
+
+def step(argument: Number) -> Fraction:
+    """Return the unit step: 1 from 0 on.  Raises UnreadableError for a ball around 0."""
+    if argument >= 0:
+        return Fraction(1)
+    if argument < 0:
+        return Fraction(0)
+    raise UnreadableError("a step at an instant that is not told from its own")
 
 
 def ball_of(number: Number | int) -> arb:

@@ -332,7 +332,7 @@ def check_conditions(record: Record) -> None:
 def check_names(record: Record) -> None:
     """Raise if a formula uses a name that nothing defines, or is complex."""
     for case, text in formulas_of(record):
-        allowed = {*record["parameters"], *case.get("names", {}), record.get("time", "t")}
+        allowed = {*record["parameters"], *case.get("names", {}), record.get("time", "t"), "pi"}
         strange = names_in(parse(text)) - allowed
         if strange:
             raise DisagreementError(f"{text!r} uses {', '.join(sorted(strange))}")
