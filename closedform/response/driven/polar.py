@@ -213,19 +213,17 @@ def _modulus(
 ) -> Expression:
     """Return front · sqrt(x^2 + y^2), with the root above or below: F/sqrt(D), not F sqrt(D)/D."""
     square = x**2 + y**2
-    outside, inside = _drawn_out(field, sign_of, square)
-    front *= outside
-    if inside == 1:
-        return rational_formula(field, front)
-    root = Call("sqrt", rational_formula(field, inside))
-    if outside == 1 and x and y:
+    outside, above, below = _drawn_out(field, sign_of, square * front**2)
+    if above == 1 and below == 1:
+        return rational_formula(field, outside)
+    roots = [[] if e == 1 else [Call("sqrt", rational_formula(field, e))] for e in (above, below)]
+    forms = [weighted_rational(field, outside, *roots)]
+    if x and y:
         squares = [_squared(field, x), _squared(field, y)]
         squares.sort(key=lambda formula: not isinstance(formula, Power))
-        root = min(Call("sqrt", sum_of(squares)), root, key=operations)
-    forms = (
-        weighted_rational(field, front, [root], []),
-        weighted_rational(field, front * inside, [], [root]),
-    )
+        root = Call("sqrt", sum_of(squares))
+        forms.insert(0, weighted_rational(field, front, [root], []))
+        forms.insert(0, weighted_rational(field, front * square, [], [root]))
     return min(forms, key=operations)
 
 
@@ -236,22 +234,25 @@ def _squared(field: ParameterField, element: Scalar) -> Expression:
     return rational_formula(field, element**2)
 
 
-def _drawn_out(field: ParameterField, sign_of: SignOf, square: Scalar) -> tuple[Scalar, Scalar]:
-    """Return (o, i) with square = o^2 i and o >= 0, for a polynomial that is no zero."""
+def _drawn_out(
+    field: ParameterField, sign_of: SignOf, square: Scalar
+) -> tuple[Scalar, Scalar, Scalar]:
+    """Return (o, a, b) with square = o^2 a/b and o >= 0, for an element that is not zero."""
     parts = field.factored(square)
     size = abs(parts.content)
     whole, rest = drawn_out(size.numerator * size.denominator)
     outside = field.scalar(Fraction(whole, size.denominator))
-    inside = field.scalar(rest if parts.content > 0 else -rest)
+    sides = [field.scalar(rest if parts.content > 0 else -rest), field.domain.one]
     for polynomial, exponent in parts.factors:
         factor = field.of_polynomial(polynomial)
-        half = exponent // 2
-        values = sign_of(factor).values if half else frozenset({-1, 0, 1})
-        if values <= {0, 1} or half % 2 == 0:
-            outside *= factor**half
-        elif values <= {-1, 0}:
+        half = abs(exponent) // 2 * (1 if exponent > 0 else -1)
+        values = sign_of(factor).values if half % 2 else frozenset({1})
+        if values <= {-1, 0}:
             outside *= (-factor) ** half
+        elif values <= {0, 1}:
+            outside *= factor**half
         else:
             half = 0
-        inside *= factor ** (exponent - 2 * half)
-    return outside, inside
+        left = exponent - 2 * half
+        sides[left < 0] *= factor ** abs(left)
+    return outside, sides[0], sides[1]

@@ -87,9 +87,10 @@ def steady_state(
 ) -> SteadyState | None:
     """Return the steady state of a solution, or None where nothing is called so.
 
-    That is where the model is not known to be stable, or of a wave that stays on it is not
-    known whether it decays.  `columns` are the formulas of the functions' columns, `drive`
-    holds the tones in the case and `sign_of` tells signs there.
+    That is where the model is not known to be stable, where of a wave that stays on it is not
+    known whether it decays, and where an input repeats: that is put together elsewhere.
+    `columns` are the formulas of the functions' columns, `drive` holds the tones in the case
+    and `sign_of` tells signs there.
     """
     if functions.steady is None or functions.transient is None:
         return None
@@ -144,7 +145,7 @@ def waves_of_row(
     for summand in summands:
         for term in functions.columns.terms:
             entries = [residue.entry(row, summand.place) for residue in term.residues]
-            if not any(entries):
+            if all(vanishes_under(c, drive.relation) for e in entries for c in e.to_list()):
                 continue
             tone = drive.tone_of(term.factor.p)
             if tone is None or not summand.constant.is_one:

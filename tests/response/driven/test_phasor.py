@@ -164,6 +164,20 @@ def test_a_root_that_is_no_root_is_written_without() -> None:
     assert plain(point.modulus) == "1 + a^2"
 
 
+def test_the_number_pi_is_a_number() -> None:
+    field = ParameterField((), ("pi",))
+    pi = field.symbol("pi")
+    sign_of = ParameterDomain(field, ()).sign_of
+    point = polar(field, sign_of, pi - 4, 3 - pi)
+    assert point.angle.place == "III"
+    with ctx.workprec(300):
+        known = {"pi": arb.pi()}
+        balls = field.enclose_at(pi - 4, {}), field.enclose_at(3 - pi, {})
+        assert _agrees(
+            point, *balls, lambda e: field.enclose_at(e, {}), lambda f: enclose(f, known)
+        )
+
+
 # Whole models
 
 
@@ -336,3 +350,20 @@ def test_two_inputs_of_one_frequency_leave_no_lag() -> None:
     assert phasor is not None
     (s,) = phasor.sinusoids
     assert s.lag is None
+
+
+def test_what_the_squares_of_an_amplitude_share_is_not_written_twice() -> None:
+    model = parametric(
+        [["-2/T", "1/T"], ["1/T", "-1/T"]],
+        [["1/T"], [0]],
+        lambda e: [sine(e, "U", "w")],
+        initial=[0, 0],
+        parameters=dict.fromkeys(("T", "U", "w"), "positive"),
+    )
+    (solution,) = respond_driven(model).solutions
+    first, second = solution.phasors
+    assert first is not None
+    assert second is not None
+    below = "sqrt(1 + 7*T^2*w^2 + T^4*w^4)"
+    assert plain(first.sinusoids[0].amplitude) == f"U*sqrt(1 + T^2*w^2)/{below}"
+    assert plain(second.sinusoids[0].amplitude) == f"U/{below}"
