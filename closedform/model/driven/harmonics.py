@@ -11,15 +11,17 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
+from functools import cached_property
 from typing import Generic, TypeVar
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.waves import Kernel, Wave
 from closedform.errors import Place
-from closedform.model.driven.wave_sums import is_zero, re_expanded
+from closedform.model.driven.wave_sums import is_zero
 from closedform.notation.arithmetic import Arithmetic
+from closedform.notation.expression import Expression
 
-__all__ = ["Harmonic", "Harmonics", "NoNumberError", "harmonics_of"]
+__all__ = ["Harmonic", "Harmonics", "NoNumberError"]
 
 T = TypeVar("T")
 
@@ -60,21 +62,23 @@ class Harmonic:
     phase: Scalar
 
 
-def harmonics_of(arithmetic: Arithmetic[T], place: Place) -> Harmonics[T]:
-    """Return the arithmetic of harmonics over the values of an arithmetic."""
-    pi = arithmetic.named("pi", place) if "pi" in arithmetic.names else None
-    return Harmonics(arithmetic, pi)
-
-
 @dataclass(frozen=True)
 class Harmonics(Generic[T]):
     """Arithmetic of sums of harmonics over the values of an arithmetic.
 
-    `pi` is the number pi where that is one of the values.
+    `whole` at `place` is the formula that is read, for the errors of size, which every method
+    may raise.
     """
 
     arithmetic: Arithmetic[T]
-    pi: T | None = None
+    whole: Expression
+    place: Place
+
+    @cached_property
+    def pi(self) -> T | None:
+        """The number pi where it is a value."""
+        known = "pi" in self.arithmetic.names
+        return self.arithmetic.named("pi", self.place) if known else None
 
     def number(self, value: Fraction | int) -> T:
         """Return a rational number."""
@@ -108,7 +112,7 @@ class Harmonics(Generic[T]):
             total = found.setdefault(key, [])
             for k, c in enumerate(harmonic.polynomial):
                 if k < len(total):
-                    total[k] = total[k] + c
+                    total[k] = self._plus(total[k], c)
                 else:
                     total.append(c)
         for total in found.values():
@@ -123,7 +127,7 @@ class Harmonics(Generic[T]):
     def of_wave(self, wave: Wave) -> Harmonic:
         """Return a wave as a harmonic."""
         zero = self.number(0)
-        powers = re_expanded([zero] * wave.power + [wave.amount], -wave.origin)
+        powers = self._re_expanded([zero] * wave.power + [wave.amount], -wave.origin)
         return Harmonic(
             tuple(powers),
             wave.rate,
@@ -146,7 +150,7 @@ class Harmonics(Generic[T]):
         zero = self.number(0)
         return self.gathered(
             Harmonic(
-                (re_expanded(h.polynomial, instant)[0],),
+                (self._re_expanded(h.polynomial, instant)[0],),
                 zero,
                 h.rate * instant + h.growth,
                 h.kernel,
@@ -212,9 +216,25 @@ class Harmonics(Generic[T]):
             Wave(c * weight, power, h.rate, kernel, h.frequency, origin)
             for kernel, weight in parts
             if not is_zero(weight)
-            for power, c in enumerate(re_expanded(h.polynomial, origin))
+            for power, c in enumerate(self._re_expanded(h.polynomial, origin))
             if not is_zero(c)
         ]
+
+    def _re_expanded(self, coefficients: Sequence[Scalar], shift: Scalar) -> list[Scalar]:
+        """The coefficients of p(s + shift), held to the size of the arithmetic."""
+        moved = list(coefficients)
+        if is_zero(shift):
+            return moved
+        for first in range(len(moved) - 1):
+            for k in range(len(moved) - 2, first - 1, -1):
+                moved[k] = self._plus(moved[k], self._times(shift, moved[k + 1]))
+        return moved
+
+    def _plus(self, one: Scalar, other: Scalar) -> Scalar:
+        return self.arithmetic.added(one, other, self.whole, self.place)
+
+    def _times(self, one: Scalar, other: Scalar) -> Scalar:
+        return self.arithmetic.multiplied(one, other, self.whole, self.place)
 
     def _exact(self, kernel: Kernel, angle: T) -> T:
         """The value of cos or sin at an angle that is a known part of a turn."""
@@ -262,7 +282,7 @@ class Harmonics(Generic[T]):
         powers = [zero] * (len(a.polynomial) + len(b.polynomial) - 1)
         for j, c in enumerate(a.polynomial):
             for k, d in enumerate(b.polynomial):
-                powers[j + k] = powers[j + k] + c * d
+                powers[j + k] = self._plus(powers[j + k], self._times(c, d))
         joint = replace(
             a, polynomial=tuple(powers), rate=a.rate + b.rate, growth=a.growth + b.growth
         )

@@ -13,7 +13,7 @@ from typing import TypeVar
 from closedform.algebra.field import Scalar
 from closedform.algebra.waves import Wave
 from closedform.errors import Place
-from closedform.model.driven.harmonics import NoNumberError, harmonics_of
+from closedform.model.driven.harmonics import Harmonics, NoNumberError
 from closedform.model.driven.signal import Burst, Impulse, Repeat, Signal
 from closedform.model.driven.signal_errors import EdgeValueError, ImpulseDerivativeError
 from closedform.model.driven.wave_sums import (
@@ -160,7 +160,7 @@ def derived(
             replace(burst, waves=derivative(burst.waves, arithmetic.number))
             for burst in signal.bursts
         )
-        harmonics = harmonics_of(arithmetic, place)
+        harmonics = Harmonics(arithmetic, formula, place)
         jumps = []
         for at, waves in _edges(signal, harmonics.number(-1)):
             values = harmonics.at(map(harmonics.of_wave, waves), at)

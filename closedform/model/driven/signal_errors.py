@@ -115,16 +115,17 @@ class OutsideConstantError(SignalError):
 
 
 class SignalSizeError(SignalError):
-    """A function with more terms than can be worked with; `limit` says how many are."""
+    """A function with more terms, or of a higher degree in the time, than is worked with."""
 
-    def __init__(self, place: Place, found: str, time: str, limit: int) -> None:
-        super().__init__(place, found, time, limit)
-        self.limit = limit
+    def __init__(self, place: Place, found: str, time: str, terms: int, degree: int) -> None:
+        super().__init__(place, found, time, terms, degree)
+        self.terms, self.degree = terms, degree
 
     def _paragraph(self) -> str:
         return (
-            f"{quoted(self.found)} multiplies out to more than {self.limit} terms, and each adds "
-            "to the order of the model; state a simpler input"
+            f"{quoted(self.found)} multiplies out to more than {self.terms} terms, or to a degree "
+            f"above {self.degree} in {self.time}; each adds to the order of the model: state a "
+            "simpler input"
         )
 
 

@@ -9,7 +9,7 @@ from typing import Generic, TypeVar
 
 from closedform.algebra.field import Scalar
 from closedform.errors import Place
-from closedform.model.driven.harmonics import Harmonic, Harmonics, harmonics_of
+from closedform.model.driven.harmonics import Harmonic, Harmonics
 from closedform.model.driven.instants import Signs, order_of_numbers
 from closedform.model.driven.signal import Signal
 from closedform.model.driven.signal_errors import (
@@ -20,7 +20,7 @@ from closedform.model.driven.signal_errors import (
     UnknownDirectionError,
     UnreadFunctionError,
 )
-from closedform.model.driven.switched import Part, Strike, Switched, SwitchedAlgebra
+from closedform.model.driven.switched import MOST_POWER, Part, Strike, Switched, SwitchedAlgebra
 from closedform.notation.arithmetic import Arithmetic
 from closedform.notation.expression import (
     Call,
@@ -39,9 +39,6 @@ from closedform.notation.plain import plain
 __all__ = ["signal_of"]
 
 T = TypeVar("T")
-
-MOST_POWER = 40
-"""The largest exponent; each power of the time is a row more in the model of the input."""
 
 
 def signal_of(
@@ -66,7 +63,7 @@ def signal_of(
     'sin'
     """
     order = order_of_numbers(arithmetic, place, signs)
-    algebra = SwitchedAlgebra(harmonics_of(arithmetic, place), order, time, place)
+    algebra = SwitchedAlgebra(Harmonics(arithmetic, expression, place), order, time, place)
     return _Reading(arithmetic, algebra, time, place).signal(expression)
 
 

@@ -26,10 +26,12 @@ from closedform.notation.errors import DivisionByZeroError
 from closedform.notation.expression import Expression
 from closedform.notation.plain import plain
 
-__all__ = ["Part", "Strike", "Switched", "SwitchedAlgebra"]
+__all__ = ["MOST_POWER", "Part", "Strike", "Switched", "SwitchedAlgebra"]
 
 T = TypeVar("T")
 
+MOST_POWER = 20
+"""The largest exponent; each power of the time is a row more in the model of the input."""
 MOST_TERMS = 400
 """Products of terms in one multiplication."""
 
@@ -124,8 +126,9 @@ class SwitchedAlgebra(Generic[T]):
 
     def _both(self, one: Part, other: Part, whole: Expression) -> list[Part]:
         """The product of two parts, where both are on."""
-        if len(one.harmonics) * len(other.harmonics) > MOST_TERMS:
-            raise SignalSizeError(self.place, plain(whole), self.time, MOST_TERMS)
+        many = len(one.harmonics) * len(other.harmonics) > MOST_TERMS
+        if many or _degree(one) + _degree(other) > MOST_POWER:
+            raise SignalSizeError(self.place, plain(whole), self.time, MOST_TERMS, MOST_POWER)
         start = self.order.later(one.start, other.start)
         end = self.order.earlier(one.end, other.end)
         if self.order.is_empty(start, end):
@@ -179,3 +182,7 @@ class SwitchedAlgebra(Generic[T]):
                 self.place, plain(whole), self.time, error.constant
             ) from None
         return added([Signal(tuple(bursts), tuple(impulses))])
+
+
+def _degree(part: Part) -> int:
+    return max(len(h.polynomial) for h in part.harmonics) - 1

@@ -22,6 +22,9 @@ __all__ = [
     "shortest",
 ]
 
+MOST_MOVED = 6
+"""The degree up to which polynomials are tried about other origins."""
+
 Key = tuple[int, Scalar, Kernel, Scalar, Scalar]
 
 
@@ -80,13 +83,13 @@ def gathered(waves: Iterable[Wave]) -> tuple[Wave, ...]:
 def shortest(waves: Iterable[Wave], *origins: Scalar | None) -> tuple[Wave, ...]:
     """Return the gathered sum with its polynomial about that origin which leaves fewest terms.
 
-    Tried are 0 and the given origins, in this order.
+    Tried are 0 and the given origins, in this order; a polynomial of a high degree stays.
     """
     total = gathered(waves)
     powers = [wave for wave in total if is_polynomial(wave)]
     best = powers
     for origin in origins:
-        if origin is not None and powers:
+        if origin is not None and powers and powers[-1].power <= MOST_MOVED:
             moved = _about(powers, origin)
             best = moved if len(moved) < len(best) else best
     return (*best, *total[len(powers) :])
