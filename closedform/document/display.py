@@ -18,7 +18,7 @@ from closedform.document.symbols import ANY_ROW, side_box
 from closedform.notation.expression import Expression, Product
 from closedform.notation.latex.box import EM_PER_LINE, RELATION, Box
 
-__all__ = ["RELATIONS", "Display", "displayed", "displayed_together", "fits"]
+__all__ = ["RELATIONS", "Display", "displayed", "displayed_together", "fits", "narrow"]
 
 WIDEST_LEFT_SIDE = 12.0
 """A left side up to this width, in em, keeps the lines below it indented past it."""
@@ -31,6 +31,7 @@ KEPT_TOGETHER = 6
 """Rows of one formula up to this number stay on one page."""
 
 AS_GIVEN = frozenset({"matrix", "initial", "J", "real form"})
+AS_GIVEN |= {"system matrix", "input matrix", "stacked matrix", "generator matrix"}
 """Statements of what the user gave: their matrices keep their entries as they are."""
 
 MARK = "\t"
@@ -138,6 +139,12 @@ def _laid_out(statement: Statement, by: str) -> _Layout:
 def fits(statement: Statement) -> bool:
     """Say whether the statement can stand whole, no matrix of it taken apart."""
     return displayed(statement).form == "whole"
+
+
+def narrow(statement: Statement) -> bool:
+    """Say whether the statement fits on one line."""
+    boxes = [side_box(side) for side in statement.sides]
+    return sum(box.width for box in boxes) + RELATION * (len(boxes) - 1) <= EM_PER_LINE
 
 
 def _environment(rows: list[str], label: str, *, number_last: bool) -> str:

@@ -12,7 +12,7 @@ from closedform.document.tables import decimal_tables
 from closedform.notation.expression import Call, Expression, Name, Power, Product, number
 from closedform.notation.latex.escape import escaped
 
-__all__ = ["FILTERS", "FUNCTIONS"]
+__all__ = ["FILTERS", "FUNCTIONS", "stacked_symbol"]
 
 NUMBER_WORDS = "no one two three four five six seven eight nine ten eleven twelve"
 WORDS = NUMBER_WORDS.split()
@@ -29,6 +29,30 @@ def symbol(
 ) -> Symbol:
     """Return a symbol of a kind for use in a sentence."""
     return Symbol(kind, indices, argument, letter)
+
+
+STACKED = {
+    "matrix": "A",
+    "vector": "x",
+    "transition": "A",
+    "determinant": "A",
+    "shifted": "A",
+    "resolvent": "A",
+    "adjugate": "A",
+}
+"""The letters that get a hat where a derivation is about states and inputs stacked."""
+
+
+def stacked_symbol(
+    kind: str, letter: str = "", *indices: str, argument: Expression | None = None
+) -> Symbol:
+    """Return a symbol as `symbol` does, the matrix and the vector of the model in hats.
+
+    Only where the letter is left out: a letter that is given is meant as it stands.
+    """
+    if not letter and kind in STACKED:
+        letter = f"{STACKED[kind]}_hat"
+    return symbol(kind, letter, *indices, argument=argument)
 
 
 def named(item: str | Expression) -> Expression:

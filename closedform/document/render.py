@@ -10,8 +10,9 @@ from typing import TYPE_CHECKING, TypeVar, get_args
 
 from closedform.derivation.step import Depth, Derivation, Symbol
 from closedform.document.beside import displayed_beside
+from closedform.document.display import narrow
 from closedform.document.latex import fits
-from closedform.document.phrases import FILTERS, FUNCTIONS
+from closedform.document.phrases import FILTERS, FUNCTIONS, stacked_symbol
 from closedform.document.references import References
 from closedform.errors import InputError
 from closedform.notation.expression import Name
@@ -122,7 +123,7 @@ def render(
     shown = DEPTHS[: DEPTHS.index(depth) + 1]
     steps = [step for step in derivation.steps if step.depth in shown]
     kinds = {step.kind for step in derivation.steps}
-    values = {
+    values: dict[str, object] = {
         "title": derivation.title,
         "steps": steps,
         "depth": depth,
@@ -130,6 +131,9 @@ def render(
         "form": Symbol("matrix", ("R",) if "real_form" in kinds else (), letter="J"),
         "foot": _shortened(derivation.title),
     }
+
+    if "input_system" in kinds:
+        values["symbol"] = stacked_symbol
 
     def twice() -> str:
         main = environment.get_template(MAIN)
@@ -217,13 +221,14 @@ def _environment(loader: BaseLoader, references: References) -> Environment:
         "section_label": references.section,
     }
     environment.tests["fits"] = fits
+    environment.tests["narrow"] = narrow
     return environment
 
 
 def _time(derivation: Derivation) -> Name:
     for step in derivation.steps:
         time = step.facts.get("time")
-        if step.kind == "model" and isinstance(time, str):
+        if step.kind in ("model", "driven_model") and isinstance(time, str):
             return Name(time)
     return Name("t")
 

@@ -30,6 +30,14 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     sum                        parts: sides                        R_0 g + R_1 g'
     quotient                   parts: above, below                 r(lambda) / p'(lambda)
     time derivative            argument [t]                        d/dt
+    dotted                     letter [x] indices argument order   x with a dot
+    step                       argument                            epsilon(t - a)
+    blocks                     indices: number of columns; parts   [A, B; 0, W]
+    interval                   indices: both, from, until or       a <= t < b
+                               otherwise; argument [t]; parts
+    cases                      parts: value, interval, …           { 0, t < a; 1, otherwise
+
+A letter that ends in _hat has a wide hat.
 
 `IMAGINARY_UNIT` of closedform.derivation.step is the upright i inside formulas.
 """
@@ -49,7 +57,15 @@ from closedform.notation.expression import (
     Sum,
     is_expression,
 )
-from closedform.notation.latex.box import BINARY, Box, Style, bracketed, joined, plain
+from closedform.notation.latex.box import (
+    BINARY,
+    RELATION,
+    Box,
+    Style,
+    bracketed,
+    joined,
+    plain,
+)
 from closedform.notation.latex.formula import formula, signed
 from closedform.notation.latex.names import letter_box, name_box, subscripted
 
@@ -59,7 +75,7 @@ ANY_ROW = r"\cdot"
 """The first index of an entry that stands for a whole column."""
 
 COMPOUND = frozenset({"pair", "real pair", "sum", "shifted"})
-LETTERS = frozenset({"matrix", "vector", "inverse", "identity", "zero", "derivative"})
+LETTERS = frozenset({"matrix", "vector", "inverse", "identity", "zero", "derivative", "dotted"})
 
 
 def side_box(side: Side) -> Box:
@@ -107,7 +123,15 @@ def symbol_box(symbol: Symbol) -> Box:
 
 
 def _bold(symbol: Symbol, letter: str, style: Style = Style.DISPLAY) -> Box:
-    return subscripted(letter_box(symbol.letter or letter, style, bold=True), symbol.indices, style)
+    return subscripted(_lettering(symbol.letter or letter, style), symbol.indices, style)
+
+
+def _lettering(text: str, style: Style) -> Box:
+    plain_text = text.removesuffix("_hat")
+    box = letter_box(plain_text, style, bold=True)
+    if plain_text == text:
+        return box
+    return Box(rf"\widehat{{{box.latex}}}", box.width, box.height)
 
 
 def _raised(box: Box, exponent: str, width: float) -> Box:
@@ -274,6 +298,59 @@ def _quotient(symbol: Symbol) -> Box:
     return Box(rf"\frac{{{above.latex}}}{{{below.latex}}}", wide, 2)
 
 
+def _dotted(symbol: Symbol) -> Box:
+    order = max(symbol.order, 1)
+    body = _lettering(symbol.letter or "x", Style.DISPLAY)
+    dots = Box(rf"\{'d' * order}ot{{{body.latex}}}", body.width, body.height)
+    return _applied(subscripted(dots, symbol.indices, Style.DISPLAY), symbol.argument)
+
+
+def _step(symbol: Symbol) -> Box:
+    return _applied(plain(r"\varepsilon", 0.52), symbol.argument)
+
+
+def _blocks(symbol: Symbol) -> Box:
+    columns = int(symbol.indices[0])
+    boxes = [side_box(part) for part in symbol.parts]
+    rows = [boxes[k : k + columns] for k in range(0, len(boxes), columns)]
+    inside = r" \\ ".join(" & ".join(box.latex for box in row) for row in rows)
+    widths = [max(box.width for box in column) for column in zip(*rows, strict=True)]
+    latex = rf"\begin{{bmatrix}} {inside} \end{{bmatrix}}"
+    return Box(latex, sum(widths) + 0.95 * (columns - 1) + 1.4, 3)
+
+
+def _interval(symbol: Symbol) -> Box:
+    kind, t = symbol.indices[0], formula(symbol.argument or Name("t"))
+    bounds = [side_box(part) for part in symbol.parts]
+    match kind:
+        case "both":
+            low, high = bounds
+            return joined(low, plain(r" \leq ", RELATION), t, plain(" < ", RELATION), high)
+        case "from":
+            return joined(t, plain(r" \geq ", RELATION), bounds[0])
+        case "until":
+            return joined(t, plain(" < ", RELATION), bounds[0])
+        case "otherwise":
+            return plain(r"\text{otherwise}", 4.2)
+    raise ValueError(f"no kind of interval is called {kind!r}")
+
+
+def _cases(symbol: Symbol) -> Box:
+    values = [side_box(part) for part in symbol.parts[::2]]
+    places = [side_box(part) for part in symbol.parts[1::2]]
+    tall = any(box.height > 1 for box in values)
+    rows = [
+        f"{_case_value(value)} & {place.latex}" for value, place in zip(values, places, strict=True)
+    ]
+    inside = (r" \\[10pt] " if tall else r" \\ ").join(rows)
+    width = max(b.width for b in values) + max(b.width for b in places) + 2.4
+    return Box(rf"\begin{{cases}} {inside} \end{{cases}}", width, 3)
+
+
+def _case_value(box: Box) -> str:
+    return rf"\displaystyle {box.latex}," if box.height > 1 else f"{box.latex},"
+
+
 KINDS: dict[str, Callable[[Symbol], Box]] = {
     "matrix": _lettered("A"),
     "vector": _lettered("x"),
@@ -296,4 +373,9 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "sum": _sum,
     "quotient": _quotient,
     "time derivative": _time_derivative,
+    "dotted": _dotted,
+    "step": _step,
+    "blocks": _blocks,
+    "interval": _interval,
+    "cases": _cases,
 }

@@ -170,7 +170,10 @@ def scaled(factor: Expression, formula: Expression) -> Expression:
             return Negation(Quotient(above.operand, formula.denominator))
         return Quotient(above, formula.denominator)
     if isinstance(formula, Negation):
-        return Negation(product((factor, formula.operand)))
+        return Negation(scaled(factor, formula.operand))
     if isinstance(formula, Sum) and all(isinstance(t, Negation) for t in formula.terms):
         return Negation(product((factor, Sum(tuple(map(negated, formula.terms))))))
+    match formula:
+        case Product((Number() as amount, *others)):  # a number stays in front
+            return product((amount, factor, *others))
     return product((factor, formula))

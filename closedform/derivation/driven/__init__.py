@@ -1,0 +1,1 @@
+"""The derivation of a driven model: what is added to that of its stacked matrix."""

@@ -1,0 +1,1 @@
+"""The proof that the steps of a driven derivation are true as printed."""

@@ -1,0 +1,285 @@
+"""Inputs, the linear system they are the output of, and the stacked matrix, as printed."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from typing import Any
+
+from flint import acb, acb_mat, acb_series
+
+from closedform.derivation.driven.proof.spot import SERIES, Spot
+from closedform.derivation.driven.proof.stated import same_matrix
+from closedform.derivation.driven.proof.values import (
+    NoPieceError,
+    as_matrix,
+    column_at,
+    derivative,
+    equal,
+    side_at,
+)
+from closedform.derivation.driven.writing import A_HAT, X_HAT, Writing, bold, unboxed
+from closedform.derivation.parametric.proof.ground import Said
+from closedform.derivation.parametric.proof.model import formula_of
+from closedform.derivation.proof.evaluation import ball_at, matrix_at
+from closedform.derivation.proof.finding import Comparison, Fault, Finding, agreeing, whether
+from closedform.derivation.step import Matrix, Side, Symbol
+from closedform.model.driven.model import Input
+from closedform.notation.expression import Call, Expression, Name, names_in
+from closedform.notation.jets import jet_of
+
+__all__ = [
+    "annihilation",
+    "generator",
+    "generator_matrix",
+    "generator_start",
+    "generator_vector",
+    "input_statement",
+    "named_input",
+    "readout",
+    "readout_matrix",
+    "stacked_matrix",
+    "stacked_system",
+    "stacked_vector",
+    "tone",
+    "waves",
+]
+
+
+def input_statement(spot: Spot, said: Said) -> Iterator[Finding]:
+    """An input, as typed or in pieces, against its waves."""
+    left, right = said.statement.sides
+    model = spot.model
+    name = left.letter if isinstance(left, Symbol) else ""
+    columns = [
+        (k, given)
+        for k, given in enumerate(model.inputs)
+        if (given.name == name if name else given.formula == left)
+        or (isinstance(given.formula, Name) and given.formula.text == name)
+    ]
+    if not columns:
+        yield Fault("input", f"the model has no input {name or left}")
+        return
+    for k, given in columns:
+        if given.signal.repeat is None:
+            yield from _input_values(spot, k, given, right, of_name=bool(name))
+
+
+def _input_values(
+    spot: Spot, column: int, given: Input, side: Side, *, of_name: bool
+) -> Iterator[Finding]:
+    """The printed function of a name, delayed and derived as the input is, against its waves."""
+    order, argument = _shape(given) if of_name else (0, None)
+    if isinstance(side, Symbol) and given.formula != Name(given.name) and of_name:
+        order, argument = 0, None
+    for place in spot.places:
+        for t in spot.times(place):
+            names = {**spot.names, spot.model.time: t}
+            at = t if argument is None else ball_at(argument, names)
+            now = {**spot.names, spot.model.time: at}
+            series = {**spot.names, spot.model.time: acb_series([at, acb(1)], SERIES)}
+            try:
+                value = side_at(side, series, now)
+            except NoPieceError as wrong:
+                yield Fault("input", str(wrong))
+                return
+            found = derivative(value, order)
+            expected = spot.input_series(column, place, t)[0]
+            yield equal(f"input {given.name}", found, expected)
+
+
+def _shape(given: Input) -> tuple[int, Expression | None]:
+    """Which derivative of the function of its name an input is, and of which argument."""
+    match given.formula:
+        case Name(text):
+            return jet_of(text)[1], None
+        case Call(function, argument):
+            return jet_of(function)[1], argument
+    raise TypeError(f"{given.formula} is no input")
+
+
+def named_input(spot: Spot, said: Said) -> Iterator[Finding]:
+    """The name of an input that stands in an equation as a formula."""
+    label, formula = said.statement.sides
+    model = spot.model
+    pairs = zip(Writing(model).inputs, (given.formula for given in model.inputs), strict=True)
+    yield from whether((label, formula) in list(pairs), "input", "it is called otherwise")
+
+
+def _order_of(spot: Spot, name: str) -> tuple[int, int] | None:
+    """Which input a name with primes belongs to, and its derivative beyond the input's own."""
+    for k, label in enumerate(Writing(spot.model).inputs):
+        more = name.removeprefix(label.text)
+        if name.startswith(label.text) and not more.strip("'"):
+            return k, len(more)
+    return None
+
+
+def annihilation(spot: Spot, said: Said) -> Iterator[Finding]:
+    """alpha(d/dt) u = 0, for every wave of the input."""
+    formula, zero = map(formula_of, said.statement.sides)
+    names = sorted(n for n in names_in(formula) if _order_of(spot, n) is not None)
+    places = {_order_of(spot, name) for name in names}
+    columns = {place[0] for place in places if place is not None}
+    if len(columns) != 1:
+        yield Fault("equation of an input", "it is not of one input")
+        return
+    (column,) = columns
+    yield Comparison("right side", ball_at(zero, {}), acb(0))
+    for burst in spot.model.inputs[column].signal.bursts:
+        for wave in burst.waves:
+            t = spot.element(wave.origin) + acb(5) / 7
+            series = spot.wave_at(wave, acb_series([t, acb(1)], SERIES))
+            values: dict[str, Any] = dict(spot.names)
+            for name in names:
+                found = _order_of(spot, name)
+                values[name] = derivative(series, found[1] if found else 0)
+            yield equal("equation of an input", ball_at(formula, values), acb(0))
+
+
+def generator_vector(spot: Spot, said: Said) -> Iterator[Finding]:
+    """W holds the derivatives of each input, as many as its block has rows."""
+    symbol, column = said.statement.sides
+    writing, generator = Writing(spot.model), spot.model.generator
+    expected = [
+        (Name(writing.inputs[k].text + "'" * order),)
+        for k, size in enumerate(generator.orders if generator else ())
+        for order in range(size)
+    ]
+    same = symbol == bold("w") and column == unboxed(Matrix(tuple(expected)))
+    yield from whether(same, "w", "it is another column")
+
+
+def generator(_spot: Spot, said: Said) -> Iterator[Finding]:
+    """W' = W w: nothing but this is said."""
+    expected = (Symbol("dotted", letter="w"), (Symbol("matrix", letter="W"), bold("w")))
+    yield from whether(said.statement.sides == expected, "w' = W w", "it is another equation")
+
+
+def generator_matrix(spot: Spot, said: Said) -> Iterator[Finding]:
+    """W, number by number, and w' = W w along the inputs."""
+    if spot.generator is None:
+        yield Fault("W", "the model has no waves")
+        return
+    yield from same_matrix(spot, said, "W", spot.generator)
+    for place in spot.places:
+        t = spot.times(place)[0]
+        w = acb_mat([[e] for e in spot.generated(place, t)])
+        step = _derived(spot, place, t)
+        for k in range(w.nrows()):
+            yield equal("w' = W w", (spot.generator * w)[k, 0], step[k])
+
+
+def _derived(spot: Spot, place: int, t: acb) -> list[acb]:
+    """w'(t): one derivative more of every row."""
+    found: list[acb] = []
+    generator_ = spot.model.generator
+    for column, size in enumerate(generator_.orders if generator_ else ()):
+        if size:
+            series = spot.input_series(column, place, t)
+            found += [derivative(series, k + 1) for k in range(size)]
+    return found
+
+
+def generator_start(spot: Spot, said: Said) -> Iterator[Finding]:
+    """W at the origin of the waves that are printed beside it."""
+    symbol, column = said.statement.sides
+    if not isinstance(symbol, Symbol) or symbol.argument is None:
+        raise TypeError(f"{symbol} is no vector at an instant")
+    printed = column_at(column, spot.names, spot.names)
+    at = ball_at(symbol.argument, spot.names)
+    series_names = {**spot.names, spot.model.time: acb_series([at, acb(1)], SERIES)}
+    series = ball_at(formula_of(said.row["waves"].sides[1]), series_names)
+    size = spot.model.generator.orders[said.row["input"]] if spot.model.generator else 0
+    yield from whether(len(printed) == size, "start of w", "it has another number of rows")
+    for k, value in enumerate(printed):
+        yield equal("start of w", value, derivative(series, k))
+
+
+def waves(spot: Spot, said: Said) -> Iterator[Finding]:
+    """What an input is while a burst is on: its waves of one origin, and others apart."""
+    label = said.statement.sides[0]
+    column = said.row["input"]
+    yield from whether(label == Writing(spot.model).inputs[column], "waves", "of another input")
+    rows = [r for r in said.step.facts["starts"] if r["when"] == said.row["when"]]  # type: ignore[attr-defined]
+    rows = [r for r in rows if r["input"] == column]
+    when = said.row["when"]
+    for place in spot.places:
+        t = spot.times(place)[0]
+        names = {**spot.names, spot.model.time: t}
+        if when is not None:
+            cases = Symbol("cases", parts=(Name(spot.model.time), when))
+            try:
+                side_at(cases, names, names)
+            except NoPieceError:
+                continue
+        total = sum((ball_at(formula_of(r["waves"].sides[1]), names) for r in rows), acb(0))
+        if not _overlapping(spot, column):
+            yield equal("waves", total, spot.input_series(column, place, t)[0])
+
+
+def _overlapping(spot: Spot, column: int) -> bool:
+    """Whether several bursts of an input may be on together."""
+    return any(
+        len({b for b in spot.model.inputs[column].signal.bursts if _is_on(spot, b, k)}) > 1
+        for k in spot.places
+    )
+
+
+def _is_on(spot: Spot, burst: Any, place: int) -> bool:
+    order = {at: k for k, at in enumerate((spot.model.start, *spot.model.timeline))}
+    first = 0 if burst.start is None else order[burst.start]
+    last = len(order) if burst.end is None else order[burst.end]
+    return first <= place < last
+
+
+def tone(spot: Spot, said: Said) -> Iterator[Finding]:
+    """An eigenvalue of W."""
+    (side,) = said.statement.sides
+    if spot.generator is None:
+        yield Fault("eigenvalue of W", "there is no W")
+        return
+    if isinstance(side, Symbol):
+        rate, turn = (ball_at(formula_of(part), spot.names) for part in side.parts)
+        values = [rate + turn * acb(0, 1), rate - turn * acb(0, 1)]
+    else:
+        values = [ball_at(formula_of(side), spot.names)]
+    polynomial = spot.generator.charpoly()
+    for value in values:
+        yield equal("eigenvalue of W", polynomial(value), acb(0))
+
+
+def readout(_spot: Spot, said: Said) -> Iterator[Finding]:
+    """U = L w: nothing but this is said."""
+    expected = (bold("u"), (Symbol("matrix", letter="L"), bold("w")))
+    yield from whether(said.statement.sides == expected, "u = L w", "it is another equation")
+
+
+def readout_matrix(spot: Spot, said: Said) -> Iterator[Finding]:
+    """L gives u from w."""
+    printed = matrix_at(as_matrix(said.statement.sides[-1]), spot.names)
+    for place in spot.places:
+        t = spot.times(place)[0]
+        w = acb_mat([[e] for e in spot.generated(place, t)])
+        yield from agreeing("L w", printed * w, spot.inputs_at(place, t))
+
+
+def stacked_vector(_spot: Spot, said: Said) -> Iterator[Finding]:
+    """The states above, w below."""
+    expected = (X_HAT, Symbol("blocks", ("1",), parts=(bold("x"), bold("w"))))
+    yield from whether(said.statement.sides == expected, "stacked vector", "it is another vector")
+
+
+def stacked_system(_spot: Spot, said: Said) -> Iterator[Finding]:
+    """The homogeneous system: nothing but this is said."""
+    expected = (Symbol("dotted", letter=X_HAT.letter), (A_HAT, X_HAT))
+    yield from whether(said.statement.sides == expected, "system", "it is another equation")
+
+
+def stacked_matrix(spot: Spot, said: Said) -> Iterator[Finding]:
+    """The stacked matrix, in letters and in numbers."""
+    symbol, blocks, matrix = said.statement.sides
+    a, b, l_, w = (Symbol("matrix", letter=letter) for letter in "ABLW")
+    shapes = [Symbol("blocks", ("2",), parts=(a, fed, Symbol("zero"), w)) for fed in (b, (b, l_))]
+    yield from whether(symbol == A_HAT and blocks in shapes, "stacked matrix", "in other letters")
+    printed = matrix_at(as_matrix(matrix), spot.names)
+    yield from agreeing("stacked matrix", printed, spot.stacked)
