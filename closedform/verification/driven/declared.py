@@ -15,7 +15,8 @@ from closedform.model.driven.model import Input
 from closedform.model.parametric import ParametricModel
 from closedform.notation.expression import Call, Expression, Name
 from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared
-from closedform.verification.driven.setting import Ground, Setting
+from closedform.verification.driven.grounds import Ground
+from closedform.verification.driven.setting import Setting
 from closedform.verification.driven.stepping import wave_value
 from closedform.verification.driven.sums import Enclose
 from closedform.verification.driven.trees import Moment, impulse_weight, taylor

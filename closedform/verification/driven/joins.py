@@ -173,10 +173,8 @@ def _value(
     centre = -p.nth(1) / setting.field.domain.convert(2)
     low, high = total.coefficients
     growth, angle = constant.growth + centre * s, frequency * s
-    return [
-        (Constant(growth, "cos", angle), high),
-        (Constant(growth, "sin", angle), (low + high * centre) * (1 / frequency)),
-    ]
+    sine = (low + high * centre) * (setting.field.domain.one / frequency)
+    return [(Constant(growth, "cos", angle), high), (Constant(growth, "sin", angle), sine)]
 
 
 def _frequency(setting: Setting, p: Polynomial) -> Scalar | None:

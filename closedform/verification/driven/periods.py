@@ -21,15 +21,16 @@ from closedform.model.driven.model import DrivenModel, Input
 from closedform.model.driven.signal import Burst, Repeat, Signal
 from closedform.notation import enclose as enclose_formula
 from closedform.notation import plain, read_signal_formula
-from closedform.notation.errors import FormulaError
+from closedform.notation.errors import FormulaError, UndeclaredNameError
 from closedform.notation.expression import Expression
 from closedform.response.driven.period_formulas import PeriodicSolution, PeriodStretch
 from closedform.response.driven.periodic import PeriodFunctions
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared
 from closedform.verification.driven.equations import rows_residuals
+from closedform.verification.driven.grounds import Ground
 from closedform.verification.driven.identities import Residual, identity_check
-from closedform.verification.driven.setting import Ground, Setting, setting_of
+from closedform.verification.driven.setting import Setting, setting_of
 from closedform.verification.driven.stepping import Steps
 from closedform.verification.driven.sums import Enclose, TimedSum
 from closedform.verification.record import Check
@@ -188,18 +189,18 @@ class _Asked:
     n: int | None
 
 
-def period_formula_check(
-    setting: Setting, written: PeriodicSolution, names: frozenset[str]
-) -> Check:
+def period_formula_check(setting: Setting, written: PeriodicSolution) -> Check:
     """The formulas in the n-th period, after the last and steady, read back from their text."""
     item = "formulas of inputs that repeat, as written"
     if not setting.grounds:
         return Check(item, "not attempted", "no point of this case was found to put in")
-    known = names | {written.number, written.local}
+    known = setting.names | {written.number, written.local}
     most = 2 * setting.states + 3
     most = most if written.count is None else min(most, written.count)
     try:
         asked = dict(_asked(setting, written, most, known))
+    except UndeclaredNameError as error:
+        return Check(item, "refuted", f"{error.name} has no definition")
     except FormulaError as error:  # its text is longer or deeper than what is read
         return Check(item, "not attempted", f"a formula was not read back: {error}")
     findings = (

@@ -141,8 +141,9 @@ def _complete_check(setting: Setting) -> Check:
         return Check(_COMPLETE, "refuted", how)
     a = setting.matrix(setting.model.reduction.matrix.to_list())
     characteristic = setting.field.polynomial(a.charpoly())
+    count = max(sum(orders.values()), setting.states) + 1
     front: Scalar | None = None
-    for point in range(max(sum(orders.values()), setting.states) + 1):
+    for point in range(1, count + 1):
         s = setting.field.domain.convert(point)
         value = characteristic.eval(s)
         own = _determinant(setting, list(orders), s)
@@ -161,8 +162,8 @@ def _complete_check(setting: Setting) -> Check:
         _COMPLETE,
         "proved",
         f"{len(balances)} equations for as many unknowns: with s in the place of the derivative "
-        f"their determinant is a number other than 0 times det(sI - A), compared at "
-        f"{max(sum(orders.values()), setting.states) + 1} values of s, more than its degree",
+        f"their determinant is a number other than 0 times det(sI - A), compared at {count} values "
+        "of s, more than its degree",
     )
 
 

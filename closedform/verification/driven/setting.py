@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Mapping, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 from itertools import pairwise
@@ -17,37 +17,14 @@ from closedform.model.driven.model import DrivenModel, Jet
 from closedform.model.driven.signal import Impulse, Signal
 from closedform.response.driven.functions import Summand
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
-from closedform.response.parametric.points import border_points, case_points, points_beside
 from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.driven.grounds import Ground, grounds_of
 from closedform.verification.driven.sums import Enclose, TimedSum, wave_sum
 from closedform.verification.eigenvalues import NamedValues
 from closedform.verification.parametric.identities import vanishes_on
-from closedform.verification.parametric.values import NamesAt
 from closedform.verification.residuals import Vanishes, is_zero_element
 
-__all__ = ["Ground", "Setting", "setting_of"]
-
-POINTS = 3
-
-
-@dataclass(frozen=True)
-class Ground:
-    """Values at which formulas are put to the test: `told` says which, empty without parameters.
-
-    `balls` gives a ball for every name in the formulas, at FLINT's current precision.
-    """
-
-    field: BaseField
-    told: str
-    balls: Callable[[], Mapping[str, arb]]
-
-    def enclose(self) -> Enclose:
-        """Return what gives a ball for an element of the field."""
-        field = self.field
-        if not isinstance(field, ParameterField):
-            return field.enclose
-        known, base = self.balls(), field
-        return lambda element: base.enclose_at(element, known)
+__all__ = ["Setting", "setting_of"]
 
 
 @dataclass(frozen=True)
@@ -56,7 +33,8 @@ class Setting:
 
     `put` puts the equations of the case into an element, `vanishes` says whether an element
     is zero where the relation of the case holds.  `exponential` is that of the stacked
-    matrix, `factors` are the irreducible ones of its characteristic polynomial.
+    matrix, `factors` are the irreducible ones of its characteristic polynomial.  `names` are
+    those with a meaning in the formulas, without the time.
     """
 
     model: DrivenModel
@@ -66,6 +44,7 @@ class Setting:
     put: Callable[[Scalar], Scalar]
     vanishes: Vanishes
     grounds: tuple[Ground, ...]
+    names: frozenset[str]
 
     @property
     def field(self) -> BaseField:
@@ -269,18 +248,11 @@ def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:
             lambda element: element,
             is_zero_element,
             (Ground(model.field, "", values.balls),),
+            frozenset(c.name for c in stacked.closed_forms.constants),
         )
     if case is None:
         raise ValueError("a solution with parameters belongs to a case")
     field, branch = stacked.model.field, case.branch
-    points = case_points(field, case, POINTS)
-    points = points or points_beside(field, case, POINTS)
-    grounds = tuple(
-        Ground(
-            field, f" at {point}" if str(point) else "", NamesAt(stacked.model, case, point).balls
-        )
-        for point in (*points, *border_points(field, case))
-    )
     return Setting(
         model,
         solution,
@@ -288,7 +260,8 @@ def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:
         tuple(term.factor.p for term in branch.exponential.terms),
         lambda element: field.substituted(element, branch.values),
         lambda element: vanishes_on(branch, element),
-        grounds,
+        grounds_of(stacked, case),
+        frozenset({*field.parameters, *(q.name for q in case.quantities)}),
     )
 
 

@@ -15,7 +15,8 @@ from flint import acb_mat, arb, arb_mat, ctx
 
 from closedform.algebra.field import FieldMatrix
 from closedform.algebra.waves import Wave
-from closedform.verification.driven.setting import Ground, Setting
+from closedform.verification.driven.grounds import Ground
+from closedform.verification.driven.setting import Setting
 from closedform.verification.driven.sums import Enclose
 
 __all__ = ["Steps", "wave_value"]

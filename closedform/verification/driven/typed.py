@@ -20,7 +20,8 @@ from closedform.notation.expression import Call, Expression, Name
 from closedform.notation.jets import found_jets
 from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared
 from closedform.verification.driven.declared import input_value, moment_at
-from closedform.verification.driven.setting import Ground, Setting
+from closedform.verification.driven.grounds import Ground
+from closedform.verification.driven.setting import Setting
 from closedform.verification.driven.trees import Moment, taylor
 from closedform.verification.record import Check
 

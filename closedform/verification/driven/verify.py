@@ -26,13 +26,13 @@ from closedform.verification.driven.periods import (
 from closedform.verification.driven.reduction import reduction_checks
 from closedform.verification.driven.setting import Setting, setting_of
 from closedform.verification.driven.typed import typed_check
-from closedform.verification.driven.written import formula_check
+from closedform.verification.driven.written import defined_check, formula_check
 from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.parametric.verify import verify_cases
 from closedform.verification.record import Check, VerificationRecord
 from closedform.verification.verify import verify
 
-__all__ = ["verify_driven"]
+__all__ = ["driven_checks", "verify_driven"]
 
 
 def verify_driven(response: DrivenResponse) -> VerificationRecord | CaseRecords:
@@ -42,48 +42,31 @@ def verify_driven(response: DrivenResponse) -> VerificationRecord | CaseRecords:
     the equations as typed, the state form, initial values and joins, the parts, the inputs, and
     the formulas as they are written.
     """
-    model, stacked = response.model, response.stacked
+    stacked, own = response.stacked, stacked_check(response.model)
     if isinstance(stacked, ParametricResponse):
         records = verify_cases(stacked)
         cases = tuple(
-            VerificationRecord(
-                (
-                    *record.checks,
-                    *_checks(
-                        response,
-                        solution,
-                        frozenset(
-                            {
-                                *stacked.model.field.parameters,
-                                *(q.name for q in solution.case.quantities),
-                            }
-                            if solution.case is not None
-                            else ()
-                        ),
-                    ),
-                )
-            )
+            VerificationRecord((*record.checks, *driven_checks(response, solution)))
             for record, solution in zip(records.cases, response.solutions, strict=True)
         )
-        whole = VerificationRecord((*records.whole.checks, stacked_check(model)))
-        return CaseRecords(whole, cases)
+        return CaseRecords(VerificationRecord((*records.whole.checks, own)), cases)
     (solution,) = response.solutions
-    names = frozenset(c.name for c in stacked.closed_forms.constants)
-    own = _checks(response, solution, names)
-    return VerificationRecord((*verify(stacked).checks, stacked_check(model), *own))
+    checks = (*verify(stacked).checks, own, *driven_checks(response, solution))
+    return VerificationRecord(checks)
 
 
-def _checks(
-    response: DrivenResponse, solution: DrivenSolution, names: frozenset[str]
-) -> Iterator[Check]:
+def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterator[Check]:
+    """Yield the checks of the driven solution in one case, every one of them."""
     setting = setting_of(response, solution)
     yield from _exact_checks(setting)
-    yield formula_check(setting, names)
+    yield formula_check(setting)
+    if isinstance(response.stacked, ParametricResponse):
+        yield defined_check(response.stacked, setting)
     for single, functions, written in period_settings(response, solution):
         for check in _exact_checks(single):
             yield replace(check, item=f"one period: {check.item}")
         yield blow_check(single, functions)
-        yield period_formula_check(single, written, names)
+        yield period_formula_check(single, written)
 
 
 def _exact_checks(setting: Setting) -> Iterator[Check]:

@@ -9,15 +9,18 @@ from flint import arb
 
 from closedform.notation import enclose as enclose_formula
 from closedform.notation import plain, read_signal_formula
-from closedform.notation.errors import FormulaError
+from closedform.notation.errors import FormulaError, UndeclaredNameError
 from closedform.notation.expression import Expression
+from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared
-from closedform.verification.driven.setting import Ground, Setting
+from closedform.verification.driven.grounds import Ground
+from closedform.verification.driven.setting import Setting
 from closedform.verification.driven.stepping import Steps
 from closedform.verification.driven.sums import Enclose, TimedSum
+from closedform.verification.parametric.defined import divisor_check, divisors_in
 from closedform.verification.record import Check
 
-__all__ = ["formula_check"]
+__all__ = ["defined_check", "formula_check"]
 
 _ITEM = "driven formulas as written"
 
@@ -31,7 +34,7 @@ class _Written:
     value: Callable[[Steps, arb, Enclose], list[arb]]
 
 
-def formula_check(setting: Setting, names: frozenset[str]) -> Check:
+def formula_check(setting: Setting) -> Check:
     """Pieces, the form with unit steps, free, forced and sustained parts, in every interval."""
     if setting.model.initial is None:
         return Check(_ITEM, "not attempted", "values elsewhere than at the start are given")
@@ -39,9 +42,11 @@ def formula_check(setting: Setting, names: frozenset[str]) -> Check:
         return Check(_ITEM, "not attempted", "no point of this case was found to put in")
     try:
         parsed = [
-            _read_back(dict(_written(setting, k)), setting.model.time, names)
+            _read_back(dict(_written(setting, k)), setting.model.time, setting.names)
             for k in range(setting.last + 1)
         ]
+    except UndeclaredNameError as error:
+        return Check(_ITEM, "refuted", f"{error.name} has no definition")
     except FormulaError as error:  # its text is longer or deeper than what is read
         return Check(_ITEM, "not attempted", f"a formula was not read back: {error}")
     findings = (
@@ -60,6 +65,21 @@ def formula_check(setting: Setting, names: frozenset[str]) -> Check:
         f"their text; agree with the model carried on from one instant to the next by "
         f"exponentials in ball arithmetic {AGREED} at two instants of each interval{told}",
     )
+
+
+def defined_check(response: ParametricResponse, setting: Setting) -> Check:
+    """No divisor in the driven formulas of a case vanishes."""
+    case = setting.solution.case
+    if case is None:
+        raise ValueError("without parameters no divisor is open")
+
+    def divisors() -> Iterator[Expression]:
+        for k in range(setting.last + 1):
+            written = _read_back(dict(_written(setting, k)), setting.model.time, setting.names)
+            for own in written.values():
+                yield from divisors_in(own.formula)
+
+    return divisor_check("driven formulas defined", response, case, divisors)
 
 
 def _read_back(

@@ -7,7 +7,7 @@ divisor in its text is taken apart, and each factor is shown not to vanish on th
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterable, Iterator
 from itertools import combinations
 
 from closedform.algebra.domain import Comparison, ParameterDomain
@@ -33,42 +33,66 @@ from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.values import read_back
 from closedform.verification.record import Check
 
-__all__ = ["defined_check", "facts_of_names", "undefined_name"]
+__all__ = [
+    "defined_check",
+    "divisor_check",
+    "divisors_in",
+    "facts_of_names",
+    "undefined_name",
+]
 
 _ITEM = "formulas defined"
 
 
 def defined_check(response: ParametricResponse, case: Case) -> Check:
     """No divisor in the formulas of a case, and in the definitions of its names, vanishes."""
-    model = response.model
-    names = tuple(q.name for q in case.quantities)
     missing = undefined_name(response, case)
     if missing is not None:
         return Check(_ITEM, "refuted", f"{missing} has no definition")
+
+    def divisors() -> Iterator[Expression]:
+        for formula in _formulas(case):
+            yield from divisors_in(read_back(response.model, case, formula))
+
+    return divisor_check(_ITEM, response, case, divisors)
+
+
+def divisor_check(
+    item: str,
+    response: ParametricResponse,
+    case: Case,
+    divisors: Callable[[], Iterable[Expression]],
+) -> Check:
+    """None of the divisors vanishes anywhere in a case.
+
+    They are formulas in the parameters and the names of the case; what raises a FormulaError
+    when they are read leaves the check open.
+    """
+    model = response.model
+    names = tuple(q.name for q in case.quantities)
     field = ParameterField(parameters=(*model.field.parameters, *names))
     domain = _with_names(model.field, field, case)
-    divisors: dict[Scalar, None] = {}
+    factors: dict[Scalar, None] = {}
     try:
-        for formula in _formulas(case):
-            for below in _divisors(read_back(model, case, formula)):
-                element = rational_value(below, field, Place())
-                divisors |= dict.fromkeys(_factors(field, element))
+        for below in divisors():
+            element = rational_value(below, field, Place())
+            factors |= dict.fromkeys(_factors(field, element))
     except FormulaError as error:  # its text is longer or deeper than what is read
-        return Check(_ITEM, "not attempted", f"a formula was not read back: {error}")
+        return Check(item, "not attempted", f"a formula was not read back: {error}")
     put = _rational_definitions(field, case)
     undecided = [
         d
-        for d in divisors
+        for d in factors
         if not domain.sign_of(d).never_zero
         and not domain.sign_of(field.substituted(d, put)).never_zero
     ]
     if undecided:
         how = f"it was not decided whether {undecided[0]} may vanish"
-        return Check(_ITEM, "not attempted", how)
+        return Check(item, "not attempted", how)
     return Check(
-        _ITEM,
+        item,
         "proved",
-        f"every divisor in the formulas was taken apart, {len(divisors)} factors in all: none of "
+        f"every divisor in the formulas was taken apart, {len(factors)} factors in all: none of "
         "them vanishes in this case",
     )
 
@@ -99,21 +123,22 @@ def _formulas(case: Case) -> Iterator[Expression]:
             yield quantity.formula
 
 
-def _divisors(expression: Expression) -> Iterator[Expression]:
+def divisors_in(expression: Expression) -> Iterator[Expression]:
+    """Yield what a formula divides by, at every depth."""
     match expression:
         case Quotient(above, below):
             yield below
-            yield from _divisors(above)
-            yield from _divisors(below)
+            yield from divisors_in(above)
+            yield from divisors_in(below)
         case Power(base, exponent):
             if isinstance(exponent, Negation):
                 yield base
-            yield from _divisors(base)
+            yield from divisors_in(base)
         case Negation(inside) | Call(_, inside):
-            yield from _divisors(inside)
+            yield from divisors_in(inside)
         case Sum(several) | Product(several):
             for part in several:
-                yield from _divisors(part)
+                yield from divisors_in(part)
         case _:
             pass
 
