@@ -1,0 +1,153 @@
+"""The parts of a driven solution as plain data: pieces, free and forced, steady and transient."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import Any
+
+from closedform.model.driven.model import DrivenModel
+from closedform.notation.expression import Expression, Name
+from closedform.notation.plain import plain
+from closedform.response.driven.composition import element_formula, step_formula
+from closedform.response.driven.period_formulas import PeriodicSolution, PeriodStretch
+from closedform.response.driven.phasor import Phasor, Sinusoid
+from closedform.response.driven.polar import Angle
+from closedform.response.driven.resonance import Resonance
+from closedform.response.driven.response import DrivenSolution
+
+__all__ = ["in_rows", "input_names", "parts_of"]
+
+
+def input_names(model: DrivenModel) -> tuple[Name, ...]:
+    """Return a name for each column of the input matrix that plain notation can read.
+
+    It is that of the input where it stands as declared; F' and u(t - 2) are F_in2 and u_in3 by
+    their places, and a function of time without a name is u_in1.
+    """
+    taken = {*model.rows, *model.unknowns, model.time, *getattr(model.field, "parameters", ())}
+    taken |= {given.name for given in model.inputs}
+    found = []
+    for place, given in enumerate(model.inputs, start=1):
+        text = given.name
+        if given.formula != Name(given.name):
+            text = f"{given.name or 'u'}_in{place}"
+            while text in taken:
+                text += "_"
+        taken.add(text)
+        found.append(Name(text))
+    return tuple(found)
+
+
+def in_rows(model: DrivenModel, formulas: Sequence[Expression]) -> dict[str, Any]:
+    """Return a formula for each row of a model, by what the row is."""
+    texts = list(map(plain, formulas))
+    n, e = len(model.names), len(model.reduction.eliminated)
+    return {
+        "solution": texts[:n],
+        "eliminated": dict(zip(model.reduction.eliminated, texts[n : n + e], strict=True)),
+        "outputs": dict(
+            zip((output.name for output in model.outputs), texts[n + e :], strict=True)
+        ),
+    }
+
+
+def parts_of(solution: DrivenSolution) -> dict[str, Any]:
+    """Return the parts of a solution that there are."""
+    model, functions = solution.model, solution.functions
+    told: dict[str, Any] = {}
+    if len(functions.intervals) > 1:
+        told["pieces"] = [
+            {**_bounds(solution, place), **in_rows(model, rows)}
+            for place, rows in enumerate(solution.pieces)
+        ]
+    told["free"] = in_rows(model, solution.of(functions.free))
+    told["forced"] = in_rows(model, _forced(solution))
+    steady = solution.steady_state
+    if steady is not None:
+        told["steady_state"] = in_rows(model, steady.steady_formulas)
+        told["steady_state"]["sinusoids"] = {
+            model.rows[own.row]: _phasor(model, own) for own in solution.phasors if own is not None
+        }
+        told["transient"] = in_rows(model, steady.transient_formulas)
+    told["resonance"] = [_resonance(model, own) for own in solution.resonances]
+    if solution.periodic:
+        told["periodic"] = [_periodic(model, own) for own in solution.periodic]
+    return told
+
+
+def _bounds(solution: DrivenSolution, place: int) -> dict[str, str | None]:
+    interval, field = solution.functions.intervals[place], solution.model.field
+    end = None if interval.end is None else plain(element_formula(field, interval.end))
+    return {"from": plain(element_formula(field, interval.start)), "to": end}
+
+
+def _forced(solution: DrivenSolution) -> list[Expression]:
+    """The forced response for all times: what joins at a switching is all forced."""
+    model, functions = solution.model, solution.functions
+    first, columns = functions.forced[0], solution.columns
+    return [
+        step_formula(model.field, columns, row, first, functions.switches, model.time)
+        for row in range(len(model.rows))
+    ]
+
+
+def _phasor(model: DrivenModel, own: Phasor) -> dict[str, Any]:
+    return {
+        "mean": plain(own.mean_formula),
+        "terms": [_sinusoid(model, term) for term in own.sinusoids],
+    }
+
+
+def _sinusoid(model: DrivenModel, term: Sinusoid) -> dict[str, Any]:
+    told: dict[str, Any] = {
+        "frequency": plain(element_formula(model.field, term.frequency)),
+        "origin": plain(element_formula(model.field, term.origin)),
+        "amplitude": plain(term.amplitude),
+        "phase": _angle(term.phase),
+    }
+    if term.lag is not None:
+        name = input_names(model)[term.lag.input].text
+        told["against"] = {
+            "input": name,
+            "gain": plain(term.lag.gain),
+            "lag": _angle(term.lag.angle),
+        }
+    return told
+
+
+def _angle(angle: Angle) -> dict[str, str]:
+    return {"y": plain(angle.above), "x": plain(angle.beside)}
+
+
+def _resonance(model: DrivenModel, own: Resonance) -> dict[str, Any]:
+    return {
+        "input": input_names(model)[own.input].text,
+        "rate": plain(element_formula(model.field, own.tone.rate)),
+        "frequency": plain(element_formula(model.field, own.tone.frequency)),
+        "multiplicity": own.multiplicity,
+        "power": own.order,
+    }
+
+
+def _periodic(model: DrivenModel, own: PeriodicSolution) -> dict[str, Any]:
+    told: dict[str, Any] = {
+        "period": plain(own.period),
+        "start": plain(own.start),
+        "number": own.number,
+        "local": own.local,
+        "stretches": _stretches(model, own.stretches),
+    }
+    if own.count is not None:
+        told["count"] = own.count
+    if own.after is not None:
+        told["after"] = in_rows(model, own.after)
+    if own.steady is not None:
+        told["steady"] = _stretches(model, own.steady)
+    return told
+
+
+def _stretches(model: DrivenModel, stretches: Sequence[PeriodStretch]) -> list[dict[str, Any]]:
+    return [
+        {"from": plain(own.start), "to": plain(own.end), **in_rows(model, own.rows)}
+        for own in stretches
+    ]

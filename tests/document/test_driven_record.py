@@ -1,0 +1,205 @@
+"""The record of a driven model, checked from its JSON alone."""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Callable, Mapping
+from fractions import Fraction
+from functools import cache
+from typing import Any
+
+import pytest
+
+from closedform.algebra.surds import SurdSum
+from closedform.document.record import DIGITS, record_of, record_text
+from closedform.model.parametric import ValueSet
+from closedform.response.driven.numbers import driven_numbers_at
+from closedform.response.driven.response import DrivenResponse, respond_driven
+from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.parametric.record import CaseRecords
+from closedform.verification.record import Check, VerificationRecord
+from tests.document.test_parametric_record import SCHEMA, VALIDATOR, described
+from tests.parametric.driven_record_reader import check_driven_record, check_driven_texts
+from tests.parametric.record_reader import DisagreementError
+from tests.response.driven.stated import blow, numeric, parametric, sine, steady
+from tests.response.driven.test_driven_response import MODELS
+from tests.response.driven.test_numbers import CASES, mount, pump
+
+Record = dict[str, Any]
+
+PARAMETRIC = {
+    "pump": pump(None),
+    "mount": mount(None),
+    "blow with parameters": parametric(
+        [["-a"]],
+        [[1, 1]],
+        lambda e: [blow(e, "D", "T"), steady(e, "q")],
+        initial=["x0"],
+        parameters={"a": "positive", "D": "real", "T": "positive", "q": "real", "x0": "real"},
+        timeline=["T"],
+    ),
+}
+VALUES: dict[str, list[dict[str, str | int]]] = {
+    "pump": [given for make, given in CASES if make is pump],
+    "mount": [given for make, given in CASES if make is mount],
+    "blow with parameters": [{"a": "2/3", "D": 5, "T": "3/2", "q": -1, "x0": "1/2"}],
+}
+
+
+def proofs(response: DrivenResponse) -> VerificationRecord | CaseRecords:
+    """A record that says nothing but that something was proved; the proofs have own tests."""
+    one = VerificationRecord((Check("a", "proved", "told"),))
+    if isinstance(response.stacked, ParametricResponse):
+        return CaseRecords(one, tuple(one for _ in response.solutions))
+    return one
+
+
+@cache
+def stored(name: str) -> Record:
+    response = respond_driven(MODELS[name] if name in MODELS else PARAMETRIC[name])
+    numbers = [
+        driven_numbers_at(
+            response,
+            ValueSet("", tuple((k, SurdSum.rational(Fraction(v))) for k, v in given.items())),
+            digits=DIGITS,
+        )
+        for given in VALUES.get(name, ())
+    ]
+    record: Record = json.loads(record_text(response, proofs(response), numbers))
+    return record
+
+
+@pytest.mark.parametrize("name", [*MODELS, *PARAMETRIC])
+def test_a_record_is_as_the_schema_says_and_its_formulas_read_back(name: str) -> None:
+    VALIDATOR.validate(stored(name))
+    check_driven_texts(stored(name))
+
+
+@pytest.mark.parametrize("name", MODELS)
+def test_the_solution_in_the_record_is_the_solution_of_what_is_stated_there(name: str) -> None:
+    assert check_driven_record(stored(name)) == 1
+
+
+@pytest.mark.parametrize(
+    ("name", "values"), [(name, values) for name, rows in VALUES.items() for values in rows]
+)
+def test_each_case_solves_what_is_stated_at_its_values(
+    name: str, values: Mapping[str, str | int]
+) -> None:
+    given = {key: Fraction(value) for key, value in values.items()}
+    assert check_driven_record(stored(name), given) >= 1
+
+
+SPOILT: list[tuple[str, Callable[[Record], object]]] = [
+    ("resonance", lambda r: r["solution"].__setitem__(0, "t*sin(3*t) + t/1000")),
+    ("resonance", lambda r: r.update(initial=["0", "1"])),
+    ("resonance", lambda r: r["inputs"]["u1"].update(function="6*sin(3*t)")),
+    ("blow", lambda r: r["inputs"]["u2"]["impulses"][0].update(amount="2")),
+    ("blow", lambda r: r["pieces"][1]["solution"].__setitem__(0, "0")),
+    ("blow", lambda r: r["solution"].__setitem__(1, r["pieces"][0]["solution"][1])),
+    ("blow", lambda r: r["free"]["solution"].__setitem__(0, "0")),
+    ("blow", lambda r: r["steady_state"]["solution"].__setitem__(0, "1/5")),
+    ("integrator", lambda r: r["instants"].pop()),
+    (
+        "later start",
+        lambda r: r["steady_state"]["sinusoids"]["x1"]["terms"][0].update(amplitude="1"),
+    ),
+]
+
+
+@pytest.mark.parametrize(("name", "spoil"), SPOILT)
+def test_the_reader_finds_what_is_wrong(name: str, spoil: Callable[[Record], object]) -> None:
+    record = json.loads(json.dumps(stored(name)))
+    spoil(record)
+    with pytest.raises(DisagreementError):
+        check_driven_record(record)
+
+
+REFUSED: list[tuple[str, Callable[[Record], object]]] = [
+    ("blow", lambda r: r.pop("inputs")),
+    ("blow", lambda r: r.pop("initial")),
+    ("blow", lambda r: r.update(at_points=["x1(0) = 0"])),
+    ("blow", lambda r: r.update(stability="perhaps")),
+    ("blow", lambda r: r["pieces"][0].pop("to")),
+    ("blow", lambda r: r["stacked"].pop("transition")),
+    ("blow", lambda r: r["inputs"]["u2"].update(colour="red")),
+    ("pump", lambda r: r["cases"][0].pop("free")),
+    ("pump", lambda r: r["values"][0].update(case=-1)),
+    ("pump", lambda r: r.update(names={})),
+]
+
+
+@pytest.mark.parametrize(("name", "spoil"), REFUSED)
+def test_the_schema_refuses_what_is_no_record(name: str, spoil: Callable[[Record], object]) -> None:
+    record = json.loads(json.dumps(stored(name)))
+    spoil(record)
+    assert not VALIDATOR.is_valid(record)
+
+
+def test_every_key_of_a_record_of_a_driven_model_is_described() -> None:
+    for name in (
+        "driven_numeric",
+        "driven_parametric",
+        "driven_case",
+        "input",
+        "piece",
+        "periodic",
+    ):
+        left = [path.rsplit("/", 1)[-1] for path in described(SCHEMA["$defs"][name])]
+        assert set(left) <= {"names", "verification", "eigenvalues", "spectral"}, (name, left)
+
+
+def test_an_input_is_told_with_its_steps() -> None:
+    functions = {
+        name: entry["function"]
+        for name in ("tank and pump", "integrator", "sine cut off", "blow")
+        for entry in stored(name)["inputs"].values()
+    }
+    assert functions["tank and pump"] == "2 - 2*step(t - 10)"
+    assert functions["integrator"] == "step(t - 1) - step(t - 3)"
+    assert functions["blow"] == "0"
+
+
+def test_resonance_is_told_with_the_power_of_the_time() -> None:
+    assert stored("twofold resonance")["resonance"] == [
+        {"input": "u1", "rate": "0", "frequency": "2", "multiplicity": 2, "power": 2}
+    ]
+    told = [len(case["resonance"]) for case in stored("mount")["cases"]]
+    assert told == [0, 0, 0, 1]
+
+
+def test_a_steady_oscillation_is_told_by_amplitude_and_phase() -> None:
+    told = stored("later start")["steady_state"]["sinusoids"]
+    (term,) = told["x1"]["terms"]
+    assert (told["x1"]["mean"], term["frequency"], term["amplitude"]) == ("0", "1", "sqrt(2)/2")
+    assert term["against"]["input"] == "u1"
+
+
+def test_values_are_told_for_states_by_name() -> None:
+    record = stored("pump")
+    row = record["values"][0]
+    assert (row["case"], row["times"][0]) == (0, "0")
+    assert row["solution"]["x1"][0] == "1"
+    assert len(row["solution"]["x1"]) == len(row["times"])
+    assert row["others"] == {}
+
+
+def test_a_record_of_the_other_kind_is_refused() -> None:
+    cases, numbers = respond_driven(pump(None)), respond_driven(MODELS["blow"])
+    with pytest.raises(TypeError):
+        record_of(cases, proofs(numbers))
+    with pytest.raises(TypeError):
+        record_of(numbers, proofs(cases))
+
+
+def test_the_stacked_model_beyond_eight_states_is_told_by_its_spectral_form() -> None:
+    n = 8
+    matrix = [[-k if i == k else int(i == k + 1) for i in range(1, n + 1)] for k in range(1, n + 1)]
+    model = numeric(
+        matrix, [[0]] * (n - 1) + [[1]], lambda e: [sine(e, 1, 2)], initial=[1] + [0] * (n - 1)
+    )
+    response = respond_driven(model)
+    record = json.loads(record_text(response, proofs(response)))
+    VALIDATOR.validate(record)
+    assert "spectral" in record["stacked"]
+    check_driven_record(record)
