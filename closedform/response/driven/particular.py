@@ -144,7 +144,7 @@ def at_instant(drive: Drive, function: ExponentialMatrix, d: Scalar) -> Constant
         low, high = values
         angle = tone.frequency * d
         parts += _circular(field, growth, "cos", angle, high)
-        sine = (low + high * tone.rate) * (1 / tone.frequency)
+        sine = (low + high * tone.rate) * (field.domain.one / tone.frequency)
         parts += _circular(field, growth, "sin", angle, sine)
     return gathered_columns(parts)
 
