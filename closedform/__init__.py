@@ -16,15 +16,22 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from closedform.document.writeup import WriteUp, write_up
     from closedform.model.building import system
+    from closedform.model.driven.model import DrivenModel
     from closedform.model.model import Model
     from closedform.model.parametric import ParametricModel
     from closedform.model.reading import load
-    from closedform.response.response import Response, respond
+    from closedform.response.driven.response import DrivenResponse
+    from closedform.response.parametric.response import ParametricResponse
+    from closedform.response.response import Response
+    from closedform.response.solving import respond
+    from closedform.verification.parametric.record import CaseRecords
+    from closedform.verification.proving import verify
     from closedform.verification.record import VerificationRecord
-    from closedform.verification.verify import verify
 
 __all__ = [
     "CaseRecords",
+    "DrivenModel",
+    "DrivenResponse",
     "Model",
     "ParametricModel",
     "ParametricResponse",
@@ -40,6 +47,8 @@ __all__ = [
 
 _HOMES = {
     "CaseRecords": "closedform.verification.parametric.record",
+    "DrivenModel": "closedform.model.driven.model",
+    "DrivenResponse": "closedform.response.driven.response",
     "Model": "closedform.model.model",
     "ParametricModel": "closedform.model.parametric",
     "ParametricResponse": "closedform.response.parametric.response",

@@ -6,17 +6,22 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from closedform.derivation.build import derive
+from closedform.derivation.driven.build import derive_driven
 from closedform.derivation.parametric.build import derive_cases
 from closedform.derivation.step import Derivation
 from closedform.document.engine import compile_pdf
 from closedform.document.files import write_whole
 from closedform.document.record import DIGITS, record_text
 from closedform.document.render import check_options, check_template, render
+from closedform.model.driven.model import DrivenModel
 from closedform.model.model import Model
 from closedform.model.parametric import ParametricModel
+from closedform.response.driven.numbers import DrivenNumbersAt, driven_numbers_of
+from closedform.response.driven.response import DrivenResponse, respond_driven
 from closedform.response.parametric.numbers import NumbersAt, numbers_of
 from closedform.response.parametric.response import ParametricResponse, respond_in_cases
 from closedform.response.response import Response, respond
+from closedform.verification.driven.verify import verify_driven
 from closedform.verification.parametric.numbers import numbers_check
 from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.parametric.verify import verify_cases
@@ -34,13 +39,13 @@ __all__ = ["WriteUp", "write_up"]
 class WriteUp:
     """What came of one model: its response, what was proved, and the files written."""
 
-    response: Response | ParametricResponse
+    response: Response | ParametricResponse | DrivenResponse
     verification: VerificationRecord | CaseRecords
     files: tuple[Path, ...]
 
 
 def write_up(
-    model: Model | ParametricModel,
+    model: Model | ParametricModel | DrivenModel,
     *,
     into: str | Path = "out",
     template: str | Path = "latex",
@@ -64,7 +69,7 @@ def write_up(
     """
     check_options(depth=depth, digits=digits)
     check_template(template)
-    made = _in_cases(model, digits) if isinstance(model, ParametricModel) else _made(model, digits)
+    made = _made(model, digits)
     text = render(made.derivation, template=template, depth=depth)
     folder = Path(into)
     files = [write_whole(folder / f"{model.name}.tex", text)]
@@ -79,13 +84,23 @@ def write_up(
 class _Made:
     """A response that holds, its derivation, and what the record tells in numbers."""
 
-    response: Response | ParametricResponse
+    response: Response | ParametricResponse | DrivenResponse
     verification: VerificationRecord | CaseRecords
     derivation: Derivation
-    numbers: tuple[NumbersAt, ...] = ()
+    numbers: tuple[NumbersAt, ...] | tuple[DrivenNumbersAt, ...] = ()
 
 
-def _made(model: Model, digits: int) -> _Made:
+def _made(model: Model | ParametricModel | DrivenModel, digits: int) -> _Made:
+    match model:
+        case DrivenModel():
+            return _driven(model, digits)
+        case ParametricModel():
+            return _in_cases(model, digits)
+        case Model():
+            return _in_numbers(model, digits)
+
+
+def _in_numbers(model: Model, digits: int) -> _Made:
     response = respond(model)
     verification = verify(response)
     _refuse(model.name, verification)
@@ -94,7 +109,7 @@ def _made(model: Model, digits: int) -> _Made:
 
 
 def _in_cases(model: ParametricModel, digits: int) -> _Made:
-    """As `_made`; the values of the model are put in, and held against a numeric solution."""
+    """The values of the model are put in, too, and held against a numeric solution."""
     response = respond_in_cases(model)
     records = verify_cases(response)
     numbers = numbers_of(response, digits=digits)
@@ -105,6 +120,18 @@ def _in_cases(model: ParametricModel, digits: int) -> _Made:
     derivation = derive_cases(response, records, digits=digits, numbers=numbers)
     records = CaseRecords(VerificationRecord(derivation.checks), records.cases)
     return _Made(response, records, derivation, numbers_of(response, digits=DIGITS))
+
+
+def _driven(model: DrivenModel, digits: int) -> _Made:
+    response = respond_driven(model)
+    found = verify_driven(response)
+    numbers = driven_numbers_of(response, digits=digits)
+    _refuse(model.name, found)
+    derivation = derive_driven(response, found, digits=digits, numbers=numbers)
+    proved = VerificationRecord(derivation.checks)
+    verification = CaseRecords(proved, found.cases) if isinstance(found, CaseRecords) else proved
+    exact = driven_numbers_of(response, digits=DIGITS)
+    return _Made(response, verification, derivation, exact)
 
 
 def _refuse(name: str, verification: VerificationRecord | CaseRecords) -> None:
