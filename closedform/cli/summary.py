@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import textwrap
 from collections import Counter
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from fractions import Fraction
 from pathlib import Path
 
@@ -14,11 +14,13 @@ from closedform.algebra.enclosure import certified_decimal
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
 from closedform.cli.cases import all_checks, case_lines, parameters_line, uncovered_lines
+from closedform.cli.driven import behaviour_lines, listed, of_inputs, of_matrix, stated_lines
 from closedform.cli.screen import Line
 from closedform.document.writeup import WriteUp
 from closedform.notation.expression import Expression, Name, Negation, Number, Quotient, Sum
 from closedform.notation.plain import plain
 from closedform.notation.terms import surd_formula
+from closedform.response.driven.response import DrivenResponse
 from closedform.response.modes import Mode
 from closedform.response.names import Radical, RootPart
 from closedform.response.parametric.response import ParametricResponse
@@ -31,7 +33,8 @@ __all__ = ["summary"]
 LABEL = 17
 MOST_ROWS = 12
 MOST_DIGITS = 12
-MOST_STATES = 24
+ROWS = ("eigenvalues", "of the inputs")
+"""The labels of lines that are laid out in columns already."""
 
 
 def summary(result: WriteUp, files: Sequence[Path], *, digits: int, width: int) -> list[Line]:
@@ -43,7 +46,6 @@ def summary(result: WriteUp, files: Sequence[Path], *, digits: int, width: int) 
         ((title, "bold"),) for title in textwrap.wrap(result.response.model.title, width) or [""]
     ]
     entries = [
-        ("states", _wrapped(_states(result.response.model.states), width)),
         *_found(result, digits, width),
         ("written", [str(file) for file in files]),
     ]
@@ -56,35 +58,72 @@ def summary(result: WriteUp, files: Sequence[Path], *, digits: int, width: int) 
 def _found(result: WriteUp, digits: int, width: int) -> list[tuple[str, list[str]]]:
     """Return labelled lines: what was found, and what was proved of it."""
     response, record = result.response, result.verification
-    if isinstance(response, ParametricResponse):
-        found = [
-            ("parameters", [parameters_line(response)]),
-            ("cases", case_lines(response)),
-            ("not covered", uncovered_lines(response)),
-        ]
+    most = min(digits, MOST_DIGITS)
+    if isinstance(response, DrivenResponse):
+        found = _of_driven(response, most, width - LABEL)
     else:
-        rows = eigenvalues(response, min(digits, MOST_DIGITS), width - LABEL)
-        found = [("eigenvalues", rows), ("form", form(response))]
+        found = [("states", [listed(response.model.states)])]
+    if isinstance(response, ParametricResponse):
+        found += _of_cases(response)
+    elif isinstance(response, Response):
+        found.append((ROWS[0], eigenvalues(response, most, width - LABEL)))
+        found.append(("form", form(response)))
     checks = record if isinstance(record, VerificationRecord) else all_checks(record)
     found += [(label, [text]) for label, text in proofs(checks)]
     return [
-        (label, texts if label == "eigenvalues" else [w for t in texts for w in _wrapped(t, width)])
+        (label, texts if label in ROWS else [w for t in texts for w in _wrapped(t, width)])
         for label, texts in found
     ]
 
 
-def eigenvalues(response: Response, digits: int, width: int) -> list[str]:
+def _of_cases(response: ParametricResponse) -> list[tuple[str, list[str]]]:
+    return [
+        ("parameters", [parameters_line(response)]),
+        ("cases", case_lines(response)),
+        ("not covered", uncovered_lines(response)),
+    ]
+
+
+def _of_driven(response: DrivenResponse, digits: int, width: int) -> list[tuple[str, list[str]]]:
+    found = stated_lines(response.model)
+    stacked = response.stacked
+    if isinstance(stacked, ParametricResponse):
+        found += _of_cases(stacked)
+    else:
+        for label, told in zip(ROWS, (of_matrix(response), of_inputs(response)), strict=True):
+            found.append((label, eigenvalues(stacked, digits, width, told)))
+    return found + behaviour_lines(response)
+
+
+def _repetition(factor: Factor) -> str:
+    if factor.multiplicity == 1:
+        return ""
+    index = f", index {factor.index}" if factor.index > 1 else ""
+    return f"multiplicity {factor.multiplicity}{index}"
+
+
+def eigenvalues(
+    response: Response,
+    digits: int,
+    width: int,
+    told: Callable[[Factor], str | None] = _repetition,
+) -> list[str]:
     """Return a row for each eigenvalue or pair: decimals, exact form or name, repetition.
 
+    `told` says how often those of a factor occur, None for a factor to be left out.
     An exact form for which a row has no room is left out: it stands in the document.
     """
     forms = response.closed_forms
     found = [
-        (*row, _repetition(factor))
+        (*row, repetition)
         for factor, modes in zip(response.spectrum.factors, forms.modes, strict=True)
+        for repetition in (told(factor),)
+        if repetition is not None
         for mode in modes
         for row in _values(mode, forms, digits)
     ]
+    if not found:
+        return []
     shown = found[:MOST_ROWS] if len(found) > MOST_ROWS + 1 else found
     left = max(len(decimal) for decimal, _, _ in shown)
     right = max(len(repetition) for _, _, repetition in shown)
@@ -193,13 +232,6 @@ def _is(decimal: str, value: SurdSum | str) -> bool:
     )
 
 
-def _repetition(factor: Factor) -> str:
-    if factor.multiplicity == 1:
-        return ""
-    index = f", index {factor.index}" if factor.index > 1 else ""
-    return f"multiplicity {factor.multiplicity}{index}"
-
-
 def _has_named_roots(forms: ClosedForms, modes: Sequence[Mode]) -> bool:
     named = {c.name for c in forms.constants if isinstance(c.definition, RootPart)}
     return any(value in named for mode in modes for value in (mode.rate, mode.frequency))
@@ -209,11 +241,6 @@ def _sizes(counts: Counter[int]) -> str:
     (size, count), *smaller = sorted(counts.items(), reverse=True)
     first = f"{_counted(count, 'block', 'blocks')} of size {size}"
     return ", ".join([first, *(f"{count} of size {size}" for size, count in smaller)])
-
-
-def _states(names: Sequence[str]) -> str:
-    listed = ", ".join(names[:MOST_STATES])
-    return f"{len(names)}: {listed}{', …' if len(names) > MOST_STATES else ''}"
 
 
 def _counted(count: int, one: str, more: str) -> str:
