@@ -1,53 +1,19 @@
-"""From a proved driven response to its derivation: which steps, in which order."""
+"""From a proved driven response to its derivation."""
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
-from dataclasses import replace
+from collections.abc import Sequence
 
-from flint import acb
-
-from closedform.derivation.abbreviations import abbreviations_step
-from closedform.derivation.canonical_steps import canonical_steps
-from closedform.derivation.driven.generator_steps import generator_step
-from closedform.derivation.driven.model_steps import driven_model_step
-from closedform.derivation.driven.proof.spot import Spot
-from closedform.derivation.driven.proof.statements import prove_driven_statements
-from closedform.derivation.driven.renaming import of_the_stacked
-from closedform.derivation.driven.solution_steps import (
-    case_facts,
-    driven_solution_step,
-    driven_transition_step,
-    jumps_step,
-    particular_step,
-    split_step,
-)
-from closedform.derivation.driven.state_steps import state_form_step
-from closedform.derivation.driven.writing import Writing
-from closedform.derivation.parametric.proof.ground import said_in
-from closedform.derivation.proof.evaluation import expressions_in
-from closedform.derivation.proof.statements import prove_statements
-from closedform.derivation.resolvent_steps import resolvent_steps
-from closedform.derivation.result_steps import cautions_step, verification_step
-from closedform.derivation.spectrum_steps import (
-    characteristic_polynomial_step,
-    eigenvalues_step,
-    named_roots_steps,
-)
-from closedform.derivation.step import Derivation, Step
-from closedform.notation.expression import names_in
+from closedform.derivation.driven.cases import in_cases
+from closedform.derivation.driven.single import in_numbers
+from closedform.derivation.step import Derivation
 from closedform.response.driven.numbers import DrivenNumbersAt
 from closedform.response.driven.response import DrivenResponse
-from closedform.response.names import constant_values
 from closedform.response.parametric.response import ParametricResponse
-from closedform.response.response import Response
 from closedform.verification.parametric.record import CaseRecords
-from closedform.verification.record import Check, VerificationRecord
+from closedform.verification.record import VerificationRecord
 
 __all__ = ["derive_driven"]
-
-AT_SIGHT = 2
-"""Up to this many rows the exponential can be checked as it stands, without P and J."""
 
 
 def derive_driven(
@@ -59,9 +25,10 @@ def derive_driven(
 ) -> Derivation:
     """Return the derivation of a driven response whose records hold.
 
-    Every statement in it is proved once more as it will be printed: those about the stacked
-    matrix as those of any matrix are, the others against the motion that ball arithmetic
-    follows from instant to instant.
+    `numbers` are the results at the values that the model gives for its parameters, if it
+    gives any.  Every statement in it is proved once more as it will be printed: those about
+    the stacked matrix as those of any matrix are, the others against the motion that ball
+    arithmetic follows from instant to instant.
 
     Raises:  ValueError if the records do not hold: nothing is derived from what is not proved;
              StatementRefutedError if a step states what does not hold;
@@ -69,78 +36,11 @@ def derive_driven(
     """
     if not records.holds:
         raise ValueError("only a response that was proved is derived")
-    if isinstance(response.stacked, ParametricResponse) or isinstance(records, CaseRecords):
-        raise TypeError("numbers only")
-    return _in_numbers(response, response.stacked, records, digits)
-
-
-def _in_numbers(
-    response: DrivenResponse, stacked: Response, record: VerificationRecord, digits: int
-) -> Derivation:
-    model = response.model
-    writing = Writing(model)
-    (solution,) = response.solutions
-    facts = case_facts(solution, 1)
-    opening = [driven_model_step(writing), state_form_step(writing), generator_step(writing)]
-    inner = list(_of_the_matrix(stacked, digits))
-    results: list[Step] = []
-    forms = stacked.closed_forms
-    if forms.transition and not forms.names_amounts:
-        route = "form" if stacked.has_chains_in_print else "resolvent"
-        results.append(driven_transition_step(writing, forms.transition, facts, route))
-    results += [
-        particular_step(writing, solution, facts),
-        jumps_step(writing, solution, facts),
-        driven_solution_step(writing, solution, facts),
-    ]
-    split = split_step(writing, solution, facts)
-    results += [] if split is None else [split]
-    names = frozenset(
-        name
-        for step in results
-        for said in said_in(step, 1)
-        for side in said.statement.sides
-        for formula in expressions_in(side)
-        for name in names_in(formula)
-    )
-    abbreviations = abbreviations_step(stacked, names, digits)
-    inner += [] if abbreviations is None else [abbreviations]
-    own = [step for step in (*opening, *results) if step is not None]
-
-    def spots() -> tuple[Spot, ...]:
-        values = constant_values(forms.constants)
-        known = {name: acb(value) for name, value in values.items()}
-        return (Spot(solution, known, lambda e: acb(stacked.field.enclose(e))),)
-
-    checks = (
-        *record.checks,
-        _on_the_matrix(prove_statements(stacked, inner, digits)),
-        prove_driven_statements(model, own, [(0, spots)]),
-    )
-    if model.generator is not None:
-        inner = [of_the_stacked(step) for step in inner]
-    first = [step for step in opening if step is not None]
-    last = inner[-1:] if abbreviations is not None else []
-    middle = inner[:-1] if abbreviations is not None else inner
-    ends = (verification_step(checks, model.time), cautions_step())
-    return Derivation(model.title, (*first, *middle, *results, *last, *ends), checks)
-
-
-def _on_the_matrix(check: Check) -> Check:
-    return replace(check, item="statements on the matrix and its exponential")
-
-
-def _of_the_matrix(response: Response, digits: int) -> Iterator[Step]:
-    """From the characteristic polynomial to e^(At), of any matrix."""
-    polynomial = characteristic_polynomial_step(response)
-    yield replace(polynomial, facts={**polynomial.facts, "brief": True})
-    eigenvalues = eigenvalues_step(response, digits)
-    yield replace(eigenvalues, facts={**eigenvalues.facts, "brief": True})
-    yield from named_roots_steps(response, digits)
-    if response.has_chains_in_print:
-        small = len(response.model.states) <= AT_SIGHT
-        for step in canonical_steps(response):
-            detail = small or step.kind in ("eigenvectors", "exponential_of_form")
-            yield replace(step, depth="full") if detail else step
-    else:
-        yield from resolvent_steps(response)
+    stacked = response.stacked
+    if isinstance(stacked, ParametricResponse):
+        if not isinstance(records, CaseRecords):
+            raise TypeError("a response with parameters has records for its cases")
+        return in_cases(response, stacked, records, digits, numbers or ())
+    if isinstance(records, CaseRecords):
+        raise TypeError("a response without parameters has one record")
+    return in_numbers(response, stacked, records, digits)

@@ -30,17 +30,30 @@ SMALL = 70
 """Operations in the upper rows of the exponential up to which they are printed at working."""
 
 
-def case_facts(solution: DrivenSolution, count: int) -> dict[str, object]:
-    """Return which case a step is about, and what is said of it."""
+def case_facts(solution: DrivenSolution, count: int, *, alone: bool = True) -> dict[str, object]:
+    """Return which case a step is about, and what is said of it.
+
+    `count` is the number of all cases; `alone` says that its branch has no other.
+    """
     case = solution.case
     if case is None:
-        return {"cases": (0,), "only": True, "number": 1, "conditions": (), "generic": True}
+        return {
+            "cases": (0,),
+            "only": True,
+            "number": 1,
+            "numbers": (1,),
+            "conditions": (),
+            "generic": True,
+            "whole": True,
+        }
     return {
         "cases": (case.number,),
         "only": count == 1,
         "number": case.number + 1,
         "conditions": case_conditions_of(case),
+        "numbers": (case.number + 1,),
         "generic": case.branch.number == 0,
+        "whole": alone,
     }
 
 

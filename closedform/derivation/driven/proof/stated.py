@@ -14,7 +14,14 @@ from closedform.derivation.driven.writing import Writing, bold, unboxed
 from closedform.derivation.parametric.proof.ground import Said
 from closedform.derivation.parametric.proof.model import formula_of
 from closedform.derivation.proof.evaluation import ball_at, matrix_at
-from closedform.derivation.proof.finding import Comparison, Fault, Finding, agreeing, whether
+from closedform.derivation.proof.finding import (
+    Comparison,
+    Fault,
+    Finding,
+    agreeing,
+    undecided,
+    whether,
+)
 from closedform.derivation.step import Matrix, Side, Symbol
 from closedform.notation.expression import (
     Call,
@@ -29,6 +36,7 @@ from closedform.notation.expression import (
 )
 
 __all__ = [
+    "condition",
     "driven_system",
     "equation",
     "initial_state",
@@ -105,6 +113,21 @@ def equation(spot: Spot, said: Said) -> Iterator[Finding]:
         names = _named(spot, t, state, inputs)
         values = [formula_at(side, names, names) for side in (left, right)]
         yield equal("equation", *values)
+
+
+def condition(spot: Spot, said: Said) -> Iterator[Finding]:
+    """A comparison that selects a case holds at its points."""
+    left, right = (acb(ball_at(formula_of(side), spot.names)) for side in said.statement.sides)
+    gap = (left - right).real
+    relation, place = said.statement.relation, said.statement.says
+    if relation in ("=", "<=", ">=") and gap.contains(0):
+        yield equal(place, left, right)
+        return
+    holds = {"<": gap < 0, "<=": gap < 0, ">": gap > 0, ">=": gap > 0, "!=": gap != 0}
+    if not gap.contains(0):
+        yield from whether(bool(holds.get(relation, False)), place, "it does not hold there")
+    else:
+        yield undecided(place)
 
 
 def driven_system(spot: Spot, said: Said) -> Iterator[Finding]:

@@ -34,6 +34,7 @@ Made = Callable[[], tuple[Spot, ...]]
 """The points of a case, made afresh at FLINT's current precision."""
 
 PROVERS: dict[str, Prover] = {
+    "case condition": stated.condition,
     "equation": stated.equation,
     "driven system": stated.driven_system,
     "second order system": stated.second_order_system,
@@ -82,6 +83,9 @@ PROVERS: dict[str, Prover] = {
 }
 """What proves each statement, by what it says."""
 
+_COMPARING = frozenset({"case condition"})
+"""What asks for the relation of a statement; the others prove that sides are equal."""
+
 _OF_THE_MODEL = frozenset({"driven_model", "state_form", "input_system"})
 """Steps in which the names of the model's functions stand for themselves."""
 
@@ -102,7 +106,7 @@ def prove_driven_statements(
     for s in said:
         if s.statement.says not in PROVERS:
             raise ValueError(f"nothing proves {s.statement.says!r} of the step {s.step.kind!r}")
-        if s.statement.relation != "=":
+        if s.statement.relation != "=" and s.statement.says not in _COMPARING:
             raise ValueError(f"{s.statement.says!r} is said with {s.statement.relation!r}")
     for number, make in spots:
         mine = [s for s in said if number in s.cases]

@@ -1,0 +1,208 @@
+"""The derivation of a driven model with parameters: which steps, in which order."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import replace
+
+from closedform.derivation.driven.generator_steps import generator_step
+from closedform.derivation.driven.model_steps import driven_model_step
+from closedform.derivation.driven.proof.spot import Spot
+from closedform.derivation.driven.proof.statements import Made, prove_driven_statements
+from closedform.derivation.driven.renaming import of_the_stacked
+from closedform.derivation.driven.solution_steps import (
+    case_facts,
+    driven_solution_step,
+    driven_transition_step,
+    jumps_step,
+    particular_step,
+    split_step,
+)
+from closedform.derivation.driven.state_steps import state_form_step
+from closedform.derivation.driven.writing import Writing
+from closedform.derivation.parametric.case_steps import cases_step
+from closedform.derivation.parametric.definitions import definitions_of
+from closedform.derivation.parametric.eigenvalue_steps import definitions_step, eigenvalues_step
+from closedform.derivation.parametric.exponential_steps import exponential_steps
+from closedform.derivation.parametric.model_steps import (
+    characteristic_polynomial_step,
+    not_covered_step,
+    parameters_step,
+)
+from closedform.derivation.parametric.proof.ground import Ground, defined_in
+from closedform.derivation.parametric.proof.statements import prove_case_statements
+from closedform.derivation.parametric.result_steps import branch_step
+from closedform.derivation.parametric.variables import names_of
+from closedform.derivation.parametric.verification_step import verification_step
+from closedform.derivation.result_steps import cautions_step
+from closedform.derivation.step import Derivation, Step
+from closedform.response.driven.numbers import DrivenNumbersAt
+from closedform.response.driven.response import DrivenResponse, DrivenSolution
+from closedform.response.parametric.points import case_points
+from closedform.response.parametric.quantities import Letters
+from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.parametric.record import CaseRecords
+from closedform.verification.record import Check, UnprovedError
+
+__all__ = ["in_cases"]
+
+POINTS = 2
+
+
+def in_cases(
+    response: DrivenResponse,
+    stacked: ParametricResponse,
+    records: CaseRecords,
+    digits: int,
+    numbers: Sequence[DrivenNumbersAt],
+) -> Derivation:
+    """Return the derivation of a driven response with parameters."""
+    model = response.model
+    steps = tuple(_steps(response, stacked, records))
+    inner = [step for step in steps if step.kind in _OF_THE_MATRIX]
+    own = [step for step in steps if step.kind not in _OF_THE_MATRIX]
+    checks = (
+        *records.whole.checks,
+        _on_the_matrix(prove_case_statements(stacked, inner)),
+        prove_driven_statements(model, own, _spots(response, stacked, inner)),
+    )
+    if model.generator is not None:
+        kept = ("parameters", "not_covered")
+        steps = tuple(
+            of_the_stacked(s) if s.kind in _OF_THE_MATRIX and s.kind not in kept else s
+            for s in steps
+        )
+    ends = (verification_step(checks, records, stacked), cautions_step())
+    return Derivation(model.title, (*steps, *ends), checks)
+
+
+_OF_THE_MATRIX = frozenset(
+    {
+        "not_covered",
+        "parameters",
+        "characteristic_polynomial",
+        "factors",
+        "branch",
+        "definitions",
+        "cases",
+        "shared_form",
+        "transform",
+    }
+)
+"""Steps that are those of any matrix with parameters, proved as such."""
+
+
+def _on_the_matrix(check: Check) -> Check:
+    return replace(check, item="statements on the matrix and its exponential")
+
+
+def _steps(
+    response: DrivenResponse, stacked: ParametricResponse, records: CaseRecords
+) -> Iterator[Step]:
+    writing = Writing(response.model)
+    uncovered = not_covered_step(stacked)
+    if uncovered is not None:
+        yield uncovered
+    yield driven_model_step(writing)
+    parameters = parameters_step(stacked)
+    for step in (parameters, state_form_step(writing), generator_step(writing)):
+        if step is not None:
+            yield step
+    yield characteristic_polynomial_step(stacked)
+    letters = Letters(names_of(stacked))
+    told: set[object] = set()
+    for branch in stacked.branches:
+        cases = [c for c in stacked.cases if c.branch.number == branch.number]
+        if not cases:
+            continue
+        if branch.number == 0:
+            yield eigenvalues_step(stacked, letters)
+        else:
+            yield branch_step(stacked, branch, records)
+        definitions = definitions_step(
+            stacked, definitions_of(stacked, cases, told), branch=branch.number
+        )
+        if definitions is not None:
+            yield definitions
+        if branch.number == 0:
+            yield cases_step(stacked)
+            yield from exponential_steps(stacked, cases, letters)
+        solutions = [response.solutions[case.number] for case in cases]
+        yield from _results(writing, solutions, len(stacked.cases))
+
+
+def _results(writing: Writing, solutions: Sequence[DrivenSolution], count: int) -> Iterator[Step]:
+    """The steps of the cases of one branch, those that read alike told once."""
+    alone = len(solutions) == 1
+    told = [(s, case_facts(s, count, alone=alone)) for s in solutions]
+    rows = [s.case.transition if s.case is not None else () for s in solutions]
+    made = [
+        [
+            driven_transition_step(writing, own, facts, "resolvent")
+            for own, (_, facts) in zip(rows, told, strict=True)
+        ],
+        [particular_step(writing, *pair) for pair in told],
+        [jumps_step(writing, *pair) for pair in told],
+        [driven_solution_step(writing, *pair) for pair in told],
+        [step for pair in told if (step := split_step(writing, *pair)) is not None],
+    ]
+    for steps in made:
+        yield from _alike(steps, len(solutions))
+
+
+_OF_ONE_CASE = ("cases", "number", "numbers", "conditions")
+
+
+def _alike(steps: Sequence[Step], count: int) -> list[Step]:
+    """The steps, those put into one that say the same of several cases, of `count` in all."""
+    found: list[Step] = []
+    for step in steps:
+        place = next((k for k, other in enumerate(found) if _same(step, other)), None)
+        if place is None:
+            found.append(step)
+        else:
+            found[place] = _joined(found[place], step)
+    return [replace(s, facts={**s.facts, "whole": len(_tuple(s.facts["cases"])) == count}) for s in found]
+
+
+def _same(step: Step, other: Step) -> bool:
+    def rest(facts: Mapping[str, object]) -> dict[str, object]:
+        return {key: value for key, value in facts.items() if key not in _OF_ONE_CASE}
+
+    return step.statements == other.statements and rest(step.facts) == rest(other.facts)
+
+
+def _joined(step: Step, other: Step) -> Step:
+    facts = dict(step.facts)
+    for key in ("cases", "numbers"):
+        facts[key] = (*_tuple(step.facts[key]), *_tuple(other.facts[key]))
+    facts["conditions"] = ()
+    return replace(step, facts=facts)
+
+
+def _tuple(item: object) -> tuple[object, ...]:
+    return item if isinstance(item, tuple) else (item,)
+
+
+def _spots(
+    response: DrivenResponse, stacked: ParametricResponse, inner: Sequence[Step]
+) -> list[tuple[int, Made]]:
+    definitions = tuple(defined_in(inner, len(stacked.cases)))
+    found = []
+    for case, solution in zip(stacked.cases, response.solutions, strict=True):
+        points = case_points(stacked.model.field, case, POINTS, seed=2)
+        if not points:
+            how = f"no point of case {case.number + 1} was found to put in"
+            check = Check("statements of the derivation", "not attempted", how)
+            raise UnprovedError(response.model.name, (check,))
+        grounds = [Ground(stacked, case, point, definitions) for point in points]
+        found.append((case.number, _maker(solution, grounds)))
+    return found
+
+
+def _maker(solution: DrivenSolution, grounds: Sequence[Ground]) -> Made:
+    def make() -> tuple[Spot, ...]:
+        fresh = [ground.afresh() for ground in grounds]
+        return tuple(Spot(solution, ground.names, ground.element) for ground in fresh)
+
+    return make
