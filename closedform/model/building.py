@@ -36,7 +36,8 @@ def model_from(
 ) -> Model | ParametricModel | DrivenModel:
     """Return the model stated by a mapping with the keys of a model file.
 
-    With the key `parameters` it is a ParametricModel.
+    With equations, masses or inputs it is a DrivenModel, else with the key `parameters` or
+    the number pi in a formula a ParametricModel.
 
     Numbers are int, Fraction (or any other exact rational), Decimal, SurdSum, or text such
     as "0.1" or "sqrt(2)/2"; arrays are sequences, or anything with `tolist`.  `name` is the
@@ -58,12 +59,16 @@ def model_from(
 def system(  # noqa: PLR0913  the keys of a model file, each by its name
     matrix: object,
     *,
-    initial: object,
+    initial: object = None,
     states: Sequence[str] | None = None,
     title: str = "A linear system",
     outputs: Mapping[str, str] | None = None,
     times: object = (),
     time: str = "t",
+    inputs: Mapping[str, object] | None = None,
+    input_matrix: object = None,
+    start: object = None,
+    at_points: Sequence[str] | None = None,
     parameters: Mapping[str, object] | None = None,
     conditions: Sequence[str] = (),
     substitute: Mapping[str, str] | None = None,
@@ -72,6 +77,10 @@ def system(  # noqa: PLR0913  the keys of a model file, each by its name
     name: str = "system",
 ) -> Model | ParametricModel | DrivenModel:
     """Return the model x' = matrix x, x(0) = initial, from Python values.
+
+    With `inputs`, by name a function of the time or a table as in a model file, it is driven:
+    x' = matrix x + input_matrix u.  Initial values hold at `start`, 0 if not given; conditions
+    `at_points`, such as "x1(0) = 1", may take their place.
 
     Numbers are as in `model_from`; the states are called x1, x2, … unless named.  With
     `parameters`, by name an assumption or a table as in a model file, the entries may be
@@ -87,12 +96,16 @@ def system(  # noqa: PLR0913  the keys of a model file, each by its name
         "title": title,
         "states": states or [f"x{k}" for k in range(1, len(rows) + 1)],
         "matrix": matrix,
-        "initial": initial,
         "outputs": outputs or {},
         "times": times,
         "time": time,
     }
     open_ones = {
+        "initial": initial,
+        "inputs": inputs,
+        "input_matrix": input_matrix,
+        "start": start,
+        "at_points": at_points,
         "parameters": parameters,
         "conditions": conditions or None,
         "substitute": substitute,

@@ -38,7 +38,12 @@ ONLY: dict[str, tuple[str, ...]] = {
     "matrix": ("matrix",),
 }
 """The keys that belong to one form only."""
-INITIAL = {"initial": "initial = [1, 0]"}
+INITIAL = {
+    "equations": """initial = { x = "1", "x'" = "0" }""",
+    "mass": """initial = { x1 = "1", "x1'" = "0", x2 = "0", "x2'" = "0" }""",
+    "matrix": "initial = [1, 0]",
+}
+"""The line that gives values at the start, for each form."""
 OPTIONAL = ("summary", "time", "outputs", "times")
 DRIVEN = ("inputs", "input_matrix", "start", "at_points")
 PARAMETRIC = ("parameters", "conditions", "substitute", "abbreviations", "values")
@@ -134,7 +139,7 @@ def check_keys(mapping: Mapping[str, object], source: Source) -> None:
     _check_driven(mapping, form, source)
     needed = TITLE | FORMS[form]
     if "at_points" not in mapping:
-        needed |= INITIAL
+        needed |= {"initial": INITIAL[form]}
     for key, example in needed.items():
         if key not in mapping:
             raise MissingKeyError(source.place, key, example)

@@ -89,8 +89,8 @@ class UnusedParameterError(ModelError):
                 "formula; check its spelling, or take the line away"
             )
         return (
-            f"the parameter '{self.name}' is used nowhere: not in matrix, initial, outputs, "
-            "conditions, substitute or abbreviations; use it, or take it away"
+            f"the parameter '{self.name}' is used nowhere: no equation, matrix, input, value, "
+            "output, condition or definition has it; use it, or take it away"
         )
 
 

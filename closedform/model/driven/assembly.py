@@ -2,34 +2,29 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from dataclasses import replace
 from functools import cached_property
 from typing import Generic, TypeVar
 
 from closedform.algebra.domain import ParameterDomain
-from closedform.algebra.field import FieldMatrix, Scalar
+from closedform.algebra.field import Scalar
 from closedform.errors import Place
-from closedform.model.driven.balance_system import BalanceSystem
-from closedform.model.driven.columns import Column
 from closedform.model.driven.contents import Contents, Weighed
 from closedform.model.driven.generator import Generator, generator_of
 from closedform.model.driven.initial import Start
 from closedform.model.driven.initial_errors import PointJetError
 from closedform.model.driven.instants import Order, order_in
-from closedform.model.driven.jet_rows import JetRows
 from closedform.model.driven.model import (
-    Balance,
     DrivenModel,
     DrivenOutput,
     Input,
     Jet,
     PointCondition,
-    Reduction,
 )
 from closedform.model.driven.points import Point, conditions_at
-from closedform.model.driven.reduction import Reduced, reduced
 from closedform.model.driven.signal import Signal
 from closedform.model.driven.signal_algebra import mapped, numbers_of
+from closedform.model.driven.solved_form import SolvedForm
 from closedform.model.driven.stacking import generator_names, stacked_matrix, state_names
 from closedform.model.driven.timeline import Timeline, timeline_of
 from closedform.model.driven.values_at import element_text
@@ -52,116 +47,40 @@ class Assembly(Generic[T]):
     """
 
     def __init__(self, contents: Contents[T], key: str, domain: ParameterDomain | None) -> None:
-        self.contents, self.key, self.domain = contents, key, domain
+        self.contents, self.domain = contents, domain
+        self.form = SolvedForm(contents, key)
         self.numerals, self.source = contents.numerals, contents.numerals.source
-        self.columns, self.statement = contents.columns, contents.statement
-        self.field, self.convert = self.numerals.field_of(contents.numbers())
-
-    # --- the state form --------------------------------------------------------------------
-
-    @cached_property
-    def balances(self) -> tuple[Balance, ...]:
-        """The equations, with numbers of the field."""
-        return tuple(
-            Balance(
-                row.text,
-                row.left,
-                row.right,
-                tuple((jet, self.convert(weight)) for jet, weight in row.of_unknowns),
-                tuple((place, self.convert(weight)) for place, weight in row.of_inputs),
-            )
-            for row in self.statement.rows
-        )
-
-    @cached_property
-    def _reduced(self) -> Reduced:
-        stated = self.contents.initial or {}
-        system = BalanceSystem(
-            field=self.field,
-            unknowns=self.statement.unknowns,
-            balances=self.balances,
-            inputs=tuple(plain(column.formula) for column in self.columns.columns),
-            successors={
-                place: above
-                for place, above in self.columns.known_successors().items()
-                if above is not None
-            },
-            keys=tuple(row.key for row in self.statement.rows),
-            source=self.source,
-            preferred=frozenset(stated),
-            by_order=self.statement.form == "second order",
-            never_zero=self.numerals.never_zero,
-            guessed=self.statement.guessed,
-        )
-        if len(system.lower) > MOST_STATES:
-            raise TooManyStatesError(self._place, len(system.lower), MOST_STATES)
-        return reduced(system)
-
-    @property
-    def reduction(self) -> Reduction:
-        """The state form, with a column for each input of the model."""
-        return self._form[0]
-
-    @property
-    def acting(self) -> tuple[Column[T], ...]:
-        """The inputs of the model, derivatives that the state form needs among them."""
-        return self._form[1]
-
-    @cached_property
-    def _form(self) -> tuple[Reduction, tuple[Column[T], ...]]:
-        form, count = self._reduced.reduction, len(self.columns.columns)
-        targets = [
-            *range(count),
-            *(self.columns.derivative(place, self._place) for place in self._reduced.derived),
-        ]
-        acting = tuple(self.columns.columns)
-        width = len(acting)
-        reduction = Reduction(
-            form.jets,
-            form.matrix,
-            self._placed(form.input_matrix, targets, width),
-            form.eliminated,
-            form.eliminated_from_states,
-            self._placed(form.eliminated_from_inputs, targets, width),
-        )
-        return reduction, acting
-
-    def _placed(
-        self, matrix: FieldMatrix | None, targets: Sequence[int | None], width: int
-    ) -> FieldMatrix | None:
-        """A matrix with its columns put to their places, those without one left out."""
-        if matrix is None or not width:
-            return None
-        rows = []
-        for row in matrix.to_list():
-            placed = [self.field.domain.zero] * width
-            for target, entry in zip(targets, row, strict=True):
-                if target is not None:
-                    placed[target] += entry
-            rows.append(placed)
-        return self.field.matrix(rows)
-
-    @cached_property
-    def rows(self) -> JetRows:
-        """Every jet in states and inputs."""
-        return JetRows(self.field, self.reduction, self.columns.known_successors())
-
-    # --- the inputs ------------------------------------------------------------------------
+        self.statement = contents.statement
+        self.field, self.convert = self.form.field, self.form.convert
 
     @cached_property
     def _signals(self) -> tuple[Signal, ...]:
         """The signal of each input, at all times."""
-        return tuple(mapped(column.signal, self.convert) for column in self.acting)
+        return tuple(mapped(column.signal, self.convert) for column in self.form.acting)
 
     @cached_property
     def _timeline(self) -> Timeline:
-        return timeline_of(self._signals, self.start, self.field, self.domain, self._place)
+        """The instants, and the inputs from the start on.
+
+        Where the values at the start hold after a jump, the derivatives that the state form
+        needs have no impulse there.
+        """
+        signals = list(self._signals)
+        if self._initial is not None and self._initial[1]:
+            for place in range(self.form.typed, len(signals)):
+                later = (
+                    impulse
+                    for impulse in signals[place].impulses
+                    if self._order.compared(impulse.at, self.start)
+                )
+                signals[place] = replace(signals[place], impulses=tuple(later))
+        return timeline_of(signals, self.start, self.field, self.domain, self.form.place)
 
     @cached_property
     def inputs(self) -> tuple[Input, ...]:
         """The inputs as they are from the start on."""
         found = []
-        for column, signal in zip(self.acting, self._timeline.signals, strict=True):
+        for column, signal in zip(self.form.acting, self._timeline.signals, strict=True):
             one = column.declared
             if one is None:
                 found.append(Input("", column.formula, signal))
@@ -192,12 +111,25 @@ class Assembly(Generic[T]):
         stated = self.contents.initial or {}
         return {jet: self.convert(value) for jet, value in stated.items()}
 
-    @cached_property
+    @property
     def initial(self) -> tuple[Scalar, ...] | None:
         """The states at the start, None if conditions at points take their place."""
+        return self._initial and self._initial[0]
+
+    @cached_property
+    def _initial(self) -> tuple[tuple[Scalar, ...], bool] | None:
+        """The states at the start, and whether they hold after a jump."""
         if self.contents.initial is None:
             return None
-        start = Start(self.field, self.rows, self._signals, self.start, self._order, self.source)
+        start = Start(
+            field=self.field,
+            rows=self.form.rows,
+            signals=self._signals,
+            at=self.start,
+            order=self._order,
+            source=self.source,
+            algebraic=frozenset(name for name, order in self.statement.orders.items() if not order),
+        )
         return start.initial(self.stated_initial)
 
     @cached_property
@@ -215,13 +147,13 @@ class Assembly(Generic[T]):
             )
             for point in self.contents.points
         ]
-        texts = [plain(column.formula) for column in self.acting]
+        texts = [plain(column.formula) for column in self.form.acting]
         start = (self.start, plain(element_text(self.field, self.start)))
-        return conditions_at(points, self.rows, texts, start, self._order, self.source)
+        return conditions_at(points, self.form.rows, texts, start, self._order, self.source)
 
     @property
     def _order(self) -> Order:
-        return order_in(self.field, self.domain, self._place)
+        return order_in(self.field, self.domain, self.form.place)
 
     @cached_property
     def outputs(self) -> tuple[DrivenOutput, ...]:
@@ -229,12 +161,14 @@ class Assembly(Generic[T]):
         return tuple(self._output(name, weighed) for name, weighed in self.contents.outputs)
 
     def _output(self, name: str, weighed: Weighed[T]) -> DrivenOutput:
-        row = self.rows.combined({jet: self.convert(weight) for jet, weight in weighed.of_jets})
+        row = self.form.rows.combined(
+            {jet: self.convert(weight) for jet, weight in weighed.of_jets}
+        )
         if row is None:
             raise PointJetError(self.source.at(f"outputs.{name}"), name)
         zero = self.field.domain.zero
-        states = [row.of_states.get(k, zero) for k in range(len(self.reduction.jets))]
-        inputs = [row.of_inputs.get(k, zero) for k in range(len(self.acting))]
+        states = [row.of_states.get(k, zero) for k in range(len(self.form.reduction.jets))]
+        inputs = [row.of_inputs.get(k, zero) for k in range(len(self.form.acting))]
         for place, weight in weighed.of_inputs:
             inputs[place] += self.convert(weight)
         return DrivenOutput(name, tuple(states), tuple(inputs))
@@ -245,7 +179,7 @@ class Assembly(Generic[T]):
     def names(self) -> tuple[str, ...]:
         """The names of the states."""
         found, self.numerals.names = state_names(
-            self.reduction.jets, self.numerals.names, self.key, self.source
+            self.form.reduction.jets, self.numerals.names, self.form.key, self.source
         )
         return found
 
@@ -256,10 +190,10 @@ class Assembly(Generic[T]):
             return self.names
         size = len(self.names) + self.generator.order
         if size > MOST_STATES:
-            raise TooManyStatesError(self._place, size, MOST_STATES)
+            raise TooManyStatesError(self.form.place, size, MOST_STATES)
         inputs = [
             one.name if column.shifted is None or not column.shifted.order else ""
-            for one, column in zip(self.inputs, self.acting, strict=True)
+            for one, column in zip(self.inputs, self.form.acting, strict=True)
         ]
         names = self.names  # those of derivatives are in use from here on
         return names + generator_names(self.generator.orders, inputs, self.numerals.names)
@@ -267,7 +201,7 @@ class Assembly(Generic[T]):
     @cached_property
     def stacked_matrix(self) -> tuple[tuple[Scalar, ...], ...]:
         """The matrix [[A, B R], [0, S]]."""
-        return stacked_matrix(self.field, self.reduction, self.generator)
+        return stacked_matrix(self.field, self.form.reduction, self.generator)
 
     @cached_property
     def stacked_initial(self) -> tuple[Scalar, ...]:
@@ -279,10 +213,10 @@ class Assembly(Generic[T]):
     @cached_property
     def elements(self) -> tuple[Scalar, ...]:
         """What has to be defined for all values of the parameters, beside the stacked model."""
-        form = self.reduction
+        form = self.form.reduction
         matrices = (form.input_matrix, form.eliminated_from_states, form.eliminated_from_inputs)
         found = [e for m in matrices if m is not None for row in m.to_list() for e in row]
-        for balance in self.balances:
+        for balance in self.form.balances:
             found += [weight for _, weight in (*balance.of_unknowns, *balance.of_inputs)]
         for one in self.inputs:
             found += numbers_of(one.signal)
@@ -291,7 +225,7 @@ class Assembly(Generic[T]):
         for point in self.conditions:
             found += [point.at, point.value, *point.of_states]
         found += [self.start, *self.stated_initial.values()]
-        found += [1 / divisor for divisor in self._reduced.divisors]
+        found += [1 / divisor for divisor in self.form.divisors]
         return tuple(found)
 
     def model(self, stacked: Model | ParametricModel) -> DrivenModel:
@@ -302,8 +236,8 @@ class Assembly(Generic[T]):
             domain=stacked.domain if isinstance(stacked, ParametricModel) else None,
             unknowns=self.statement.unknowns,
             names=self.names,
-            balances=self.balances,
-            reduction=self.reduction,
+            balances=self.form.balances,
+            reduction=self.form.reduction,
             inputs=self.inputs,
             generator=self.generator,
             outputs=self.outputs,
@@ -318,4 +252,4 @@ class Assembly(Generic[T]):
 
     @property
     def _place(self) -> Place:
-        return self.source.at_name(self.key)
+        return self.source.at_name(self.form.key)

@@ -92,6 +92,11 @@ class BalanceSystem:
         """Return balances by their numbers, counted from 1, with their texts."""
         return tuple((k + 1, self.balances[k].text) for k in sorted(places))
 
+    @property
+    def whole(self) -> Place:
+        """Return where the balances stand."""
+        return self.source.at_name(self.keys[0].partition("[")[0])
+
     def place(self, k: int) -> Place:
         """Return where a balance stands."""
         return self.source.at(self.keys[k])

@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
+import re
 from fractions import Fraction
 from typing import Generic, TypeVar
 
 from closedform.errors import Place
+from closedform.model.driven.balance_errors import NonlinearBalanceError
 from closedform.model.driven.balances import Shifted, linear_balance, unknowns_of
 from closedform.model.driven.columns import InputColumns
 from closedform.model.driven.numerals import Numerals
+from closedform.model.driven.reduction_errors import ForgottenParameterError
 from closedform.model.driven.roles import Roles
 from closedform.model.driven.signal_reading import signal_of
 from closedform.model.driven.statement import Row, Statement
@@ -18,6 +21,7 @@ from closedform.model.naming import MOST_STATES, named_in
 from closedform.model.statement import array_of
 from closedform.notation.equation import read_equation
 from closedform.notation.expression import Expression, Negation, Sum
+from closedform.notation.jets import found_jets
 from closedform.notation.terms import negated
 
 __all__ = ["stated_by_equations"]
@@ -34,8 +38,9 @@ def stated_by_equations(
     Names of unknowns that are found become names of the model; functions of the time and
     inputs become columns.
 
-    Raises:  the errors of ``balance_errors`` and ``signal_errors``, those of names, and what
-             the reader of equations and the arithmetic raise.
+    Raises:  the errors of ``balance_errors`` and ``signal_errors``, those of names,
+             ForgottenParameterError for names that make a term a product of unknowns as they
+             are declared nowhere, and what the reader of equations and the arithmetic raise.
     """
     source = numerals.source
     texts = _texts(value, numerals)
@@ -49,11 +54,20 @@ def stated_by_equations(
             raise TooManyStatesError(source.at("equations"), len(unknowns), MOST_STATES)
         numerals.names = named_in(unknowns, "equations", "an unknown", numerals.names, source)
     roles = Roles(unknowns, columns.names, columns.time)
-    rows = tuple(
-        reading.row(text, pair, roles, f"equations[{k}]")
-        for k, (text, pair) in enumerate(zip(texts, sides, strict=True), start=1)
-    )
-    return Statement("equations", unknowns, rows, frozenset() if given else frozenset(unknowns))
+    guessed = frozenset() if given else frozenset(unknowns)
+    primed = {name for pair in sides for side in pair for name, n in found_jets(side) if n}
+    try:
+        rows = tuple(
+            reading.row(text, pair, roles, f"equations[{k}]")
+            for k, (text, pair) in enumerate(zip(texts, sides, strict=True), start=1)
+        )
+    except NonlinearBalanceError as error:
+        within = dict.fromkeys(re.findall(r"\w+", error.term))
+        names = tuple(name for name in within if name in guessed and name not in primed)
+        if not names:
+            raise
+        raise ForgottenParameterError(error.place, error.equation, error.term, names) from None
+    return Statement("equations", unknowns, rows, guessed)
 
 
 def _texts(value: object, numerals: Numerals[T]) -> list[str]:

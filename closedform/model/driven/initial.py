@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from difflib import get_close_matches
-from typing import TypeVar
+from typing import NoReturn, TypeVar
 
 from closedform.algebra.field import BaseField, Scalar
 from closedform.model.driven.initial_errors import ContradictoryInitialError, DerivativeGivenError
@@ -49,7 +49,7 @@ def stated_initial(
     if statement.form == "state form":
         given = initial_of(value, statement.unknowns, source, numerals.entry)
         return {Jet(name): one for name, one in zip(statement.unknowns, given, strict=True)}
-    orders = _orders(statement)
+    orders = statement.orders
     needed = tuple(Jet(name, j).text for name, order in orders.items() for j in range(order))
     if not isinstance(value, Mapping):
         if declared and all(order == 1 for order in orders.values()):
@@ -78,18 +78,9 @@ def stated_initial(
     return found
 
 
-def _orders(statement: Statement[T]) -> dict[str, int]:
-    """The highest derivative of each unknown."""
-    orders = dict.fromkeys(statement.unknowns, 0)
-    for row in statement.rows:
-        for jet, _ in row.of_unknowns:
-            orders[jet.name] = max(orders.get(jet.name, 0), jet.order)
-    return orders
-
-
 @dataclass(frozen=True)
 class Start:
-    """What the values at the start are held against."""
+    """What the values at the start are held against; `algebraic` unknowns have no primes."""
 
     field: BaseField
     rows: JetRows
@@ -97,12 +88,14 @@ class Start:
     at: Scalar
     order: Order
     source: Source
+    algebraic: frozenset[str]
 
-    def initial(self, stated: Mapping[Jet, Scalar]) -> tuple[Scalar, ...]:
-        """Return the initial value of each state.
+    def initial(self, stated: Mapping[Jet, Scalar]) -> tuple[tuple[Scalar, ...], bool]:
+        """Return the initial value of each state, and whether they hold after a jump.
 
         The others that are stated have to agree with the inputs as they are right before the
-        start, or right after it.
+        start, or right after it.  If what is tied to the states agrees with the latter only,
+        the values are those after what jumps at the start.
 
         Raises:  MissingInitialError, ContradictoryInitialError, UnknownOrderError.
         """
@@ -111,27 +104,45 @@ class Start:
         if missing:
             raise MissingInitialError(self.source.at("initial"), missing)
         initial = tuple(stated[jet] for jet in states)
-        for jet, value in stated.items():
-            if jet not in states:
-                self._check(jet, value, initial)
-        return initial
+        sides = {
+            jet: self._agreeing(jet, value, initial)
+            for jet, value in stated.items()
+            if jet not in states
+        }
+        after = any(sides[jet] == {False} for jet in sides if jet.name not in self.algebraic)
+        for jet, agreeing in sides.items():
+            if not agreeing or (after and False not in agreeing):
+                self._refuse(jet, stated[jet], initial, before=not after and bool(agreeing))
+        return initial, after
 
-    def _check(self, jet: Jet, value: Scalar, initial: Sequence[Scalar]) -> None:
+    def _agreeing(self, jet: Jet, value: Scalar, initial: Sequence[Scalar]) -> set[bool]:
+        """Before the start, after it, or both: with which inputs a value agrees."""
+        found = set()
+        for before in (True, False):
+            follows = self._follows(jet, initial, before=before)
+            if follows is not None:
+                follows.add_number(-value)
+            if follows is None or follows.is_zero:
+                found.add(before)
+        return found
+
+    def _follows(self, jet: Jet, initial: Sequence[Scalar], *, before: bool) -> ConstantSum | None:
+        """What a jet is at the start by the states and the inputs."""
         row = self.rows.row(jet)
         if row is None:
-            return
-        for before in (True, False):
-            total = ConstantSum(self.field)
-            for place, weight in row.of_states.items():
-                total.add_number(weight * initial[place])
-            for place, weight in row.of_inputs.items():
-                signal = self.signals[place]
-                part = value_at(self.field, signal, self.at, self.order, before=before)
-                total.add(part, weight)
-            follows = plain(total.formula)
-            total.add_number(-value)
-            if total.is_zero:
-                return
+            return None
+        total = ConstantSum(self.field)
+        for place, weight in row.of_states.items():
+            total.add_number(weight * initial[place])
+        for place, weight in row.of_inputs.items():
+            signal = self.signals[place]
+            total.add(value_at(self.field, signal, self.at, self.order, before=before), weight)
+        return total
+
+    def _refuse(
+        self, jet: Jet, value: Scalar, initial: Sequence[Scalar], *, before: bool
+    ) -> NoReturn:
+        follows = self._follows(jet, initial, before=before) or ConstantSum(self.field)
         stated = plain(element_text(self.field, value))
         where = self.source.at(f"initial.{jet.text}")
-        raise ContradictoryInitialError(where, jet.text, stated, follows)
+        raise ContradictoryInitialError(where, jet.text, stated, plain(follows.formula))

@@ -56,9 +56,10 @@ class PointCountError(ModelError):
 
     def _paragraph(self) -> str:
         count = f"{self.count} condition" + ("" if self.count == 1 else "s")
-        states = f"{len(self.states)} state" + ("" if len(self.states) == 1 else "s")
+        one = len(self.states) == 1
+        states = "is 1 state" if one else f"are {len(self.states)} states"
         return (
-            f"'at_points' has {count}, but there are {states}, {listed_names(self.states)}; "
+            f"'at_points' has {count}, but there {states}, {listed_names(self.states)}; "
             "state one condition for each"
         )
 

@@ -49,7 +49,7 @@ def reduced(system: BalanceSystem) -> Reduced:
     """
     refuse_counts(system)
     if not system.lower:
-        raise NoStateLeftError(system.source.at_name("equations"))
+        raise NoStateLeftError(system.whole)
     return _of_highest(system) or _of_descriptor(system)
 
 
@@ -117,7 +117,7 @@ def _of_descriptor(system: BalanceSystem) -> Reduced:
     tied = {c: _moved(row, c) for c, row in constraints.solved.items()}
     states = tuple(jet for jet in system.lower if column[jet] not in tied)
     if not states:
-        raise NoStateLeftError(system.source.at_name("equations"))
+        raise NoStateLeftError(system.whole)
     solved = _rates(system, states, dynamic, tied)
     if len(solved.solved) < len(states):
         refuse(system)

@@ -12,6 +12,7 @@ __all__ = [
     "AbsentUnknownError",
     "ContradictoryEquationsError",
     "FewEquationsError",
+    "ForgottenParameterError",
     "HiddenConstraintError",
     "ManyEquationsError",
     "NoStateLeftError",
@@ -171,6 +172,25 @@ class SingularEquationsError(ModelError):
             "derivatives, one of them follows from the others, or contradicts them, so that "
             f"nothing determines {listed_names(self.open_ones)}; write an equation that adds "
             "something in the place of one"
+        )
+
+
+class ForgottenParameterError(ModelError):
+    """A term that is a product of unknowns, as names in it were declared nowhere."""
+
+    def __init__(self, place: Place, equation: str, term: str, names: tuple[str, ...]) -> None:
+        super().__init__(place, equation, term, names)
+        self.equation, self.term, self.names = equation, term, names
+
+    def _paragraph(self) -> str:
+        several = len(self.names) > 1
+        are = "are" if several else "is"
+        have, them = ("have", "them") if several else ("has", "it")
+        return (
+            f"{listed_names(self.names)} in the term {quoted(self.term)} of the equation "
+            f"{quoted(self.equation)} {are} declared nowhere, so that it would be a product of "
+            f"unknowns; {listed_names(self.names)} {have} no primes: declare {them} in "
+            f'[parameters], as {self.names[0]} = "positive"'
         )
 
 

@@ -42,6 +42,15 @@ class Statement(Generic[T]):
     rows: tuple[Row[T], ...]
     guessed: frozenset[str] = frozenset()
 
+    @property
+    def orders(self) -> dict[str, int]:
+        """The highest derivative of each unknown, 0 for an algebraic one."""
+        found = dict.fromkeys(self.unknowns, 0)
+        for row in self.rows:
+            for jet, _ in row.of_unknowns:
+                found[jet.name] = max(found[jet.name], jet.order)
+        return found
+
 
 def row_of(
     numerals: Numerals[T],

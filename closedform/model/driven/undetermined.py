@@ -39,7 +39,7 @@ def refuse_counts(system: BalanceSystem) -> None:
     if equations == unknowns:
         return
     _refuse_dependent(system)
-    place = system.source.at_name("equations")
+    place = system.whole
     if equations > unknowns:
         raise ManyEquationsError(place, equations, system.unknowns)
     open_ones = _open_unknowns(system)
