@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from closedform.notation.expression import Expression
 from closedform.notation.latex.formula import formula
 from closedform.notation.plain import plain
 
-__all__ = ["FormulaColumn", "FormulaMatrix"]
+__all__ = ["FormulaColumn", "FormulaMatrix", "cases_latex"]
 
 
 class FormulaMatrix(tuple[tuple[Expression, ...], ...]):
@@ -51,3 +53,19 @@ class FormulaColumn(tuple[Expression, ...]):
 
     def _repr_latex_(self) -> str:
         return FormulaMatrix((entry,) for entry in self)._repr_latex_()
+
+
+def cases_latex(cases: Sequence[tuple[FormulaColumn, Sequence[str]]]) -> str:
+    """Return columns as LaTeX for a notebook, a row for each and the conditions it is under.
+
+    The conditions are LaTeX already; an only column without any stands by itself.
+    """
+    if len(cases) == 1 and not cases[0][1]:
+        return cases[0][0]._repr_latex_()
+    rows = [
+        f"{column._repr_latex_().strip('$')} & "
+        + r" \text{ and } ".join(map(_in_notebook, conditions))
+        for column, conditions in cases
+    ]
+    body = r" \\[1ex] ".join(rows)
+    return rf"$\displaystyle \left\{{\begin{{array}}{{ll}} {body} \end{{array}}\right.$"

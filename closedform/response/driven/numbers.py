@@ -6,25 +6,24 @@ by ball arithmetic on the written formulas, or exact.
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from flint import arb
 
-from closedform.algebra.enclosure import ball_of, certified_decimals
+from closedform.algebra.enclosure import certified_decimals
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.surds import SurdSum
 from closedform.model.parametric import ParametricModel, ValueSet
-from closedform.notation.evaluation import enclose
 from closedform.notation.expression import ZERO, Expression, Name, product
 from closedform.notation.terms import opened, sum_of
 from closedform.response.driven.composition import constant_formula, element_formula, shifted
 from closedform.response.driven.exact_sum import exact_value
 from closedform.response.driven.functions import Interval
-from closedform.response.driven.in_field import InField, Spot, in_field
+from closedform.response.driven.in_field import InField, in_field
 from closedform.response.driven.instants import suitable_instants
-from closedform.response.driven.period_formulas import PeriodicSolution
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
+from closedform.response.driven.written_values import written_balls
 from closedform.response.parametric.in_numbers import InNumbers, in_numbers
 from closedform.response.parametric.known import Known, known_at
 from closedform.response.parametric.numbers import QuantityAt, case_at
@@ -156,41 +155,14 @@ def _row(
     solution: DrivenSolution, known: Known, exact: InField, t: SurdSum, digits: int
 ) -> tuple[str, ...]:
     """The rows at one instant, those that are algebraic numbers exactly."""
-    spots = exact.spots_at(t)
+    spots, time = exact.spots_at(t), solution.model.time
     rows = range(len(solution.model.rows))
     found = [exact_value(exact, row, spots, t) for row in rows]
 
+    asked = [row for row in rows if found[row] is None]
+
     def balls() -> list[arb]:
-        at = {**known.balls(), solution.model.time: ball_of(t)}
-        own = solution.pieces[spots[0].interval]
-        totals = [enclose(own[row], at) if found[row] is None else arb(0) for row in rows]
-        for place, periodic in enumerate(solution.periodic, start=1):
-            more, here = _periodic(periodic, exact, place, spots, at, t)
-            for row in rows:
-                if more and found[row] is None:
-                    totals[row] += enclose(more[row], here)
-        return [totals[row] for row in rows if found[row] is None]
+        return written_balls(exact, solution.pieces, solution.periodic, known, (time, t), asked)
 
     decimals = iter(certified_decimals(balls, digits))
     return tuple(next(decimals) if e is None else surd_decimal(e, digits) for e in found)
-
-
-def _periodic(
-    periodic: PeriodicSolution,
-    exact: InField,
-    place: int,
-    spots: Sequence[Spot],
-    at: Mapping[str, arb],
-    t: SurdSum,
-) -> tuple[tuple[Expression, ...], Mapping[str, arb]]:
-    """The formulas of what inputs that repeat add at t, none before they begin, and their names."""
-    own = [spot for spot in spots if spot.part == place]
-    if not own:
-        return (), at
-    last = own[-1]
-    if last.interval >= len(periodic.stretches):
-        return periodic.after or (), at
-    field, part = exact.field, exact.parts[place]
-    begun = field.enclose(part.intervals[0].start + (part.period or 0) * field.scalar(last.shift))
-    names = {periodic.number: arb(last.shift + 1), periodic.local: ball_of(t) - begun}
-    return periodic.stretches[last.interval].rows, {**at, **names}

@@ -2,132 +2,55 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
-from functools import cached_property
+from fractions import Fraction
+
+from flint import arb, arb_mat
 
 from closedform.algebra.branches import Branch
 from closedform.algebra.domain import ParameterDomain
+from closedform.algebra.enclosure import enclosed_to
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import Scalar
 from closedform.algebra.hurwitz import sign_oracle
 from closedform.algebra.parameter_field import ParameterField
-from closedform.algebra.sign_argument import SignArgument
+from closedform.algebra.surds import SurdSum
 from closedform.model.driven.model import DrivenModel
-from closedform.model.parametric import ParametricModel
+from closedform.model.parametric import ParametricModel, ValueSet
 from closedform.notation.expression import Expression
 from closedform.notation.plain import plain
+from closedform.notation.shown import FormulaColumn, cases_latex
 from closedform.response.by_mode import ByMode
 from closedform.response.driven.assembly import driven_functions
 from closedform.response.driven.composition import (
     element_formula,
-    interval_formula,
-    step_formula,
 )
-from closedform.response.driven.functions import DrivenFunctions, Interval, Summand
-from closedform.response.driven.particular import Drive, beside, drive_of
-from closedform.response.driven.period_formulas import PeriodicSolution, periodic_solution
+from closedform.response.driven.functions import DrivenFunctions
+from closedform.response.driven.in_field import in_field
+from closedform.response.driven.particular import beside
+from closedform.response.driven.period_formulas import periodic_solution
 from closedform.response.driven.periodic import (
     PeriodFunctions,
     period_functions,
     repeating,
     without_repeats,
 )
-from closedform.response.driven.phasor import Phasor, phasors_of
 from closedform.response.driven.resonance import Resonance, resonances_of
+from closedform.response.driven.sampling import enclosed_at
+from closedform.response.driven.solution import DrivenSolution
 from closedform.response.driven.stability import Stability, stability_of
-from closedform.response.driven.steady import SteadyState, stays, steady_state
+from closedform.response.driven.steady import stays
+from closedform.response.driven.written_values import written_balls
 from closedform.response.parametric.case import Case
+from closedform.response.parametric.known import known_at
+from closedform.response.parametric.numbers import case_at
 from closedform.response.parametric.response import ParametricResponse, respond_in_cases
 from closedform.response.response import Response, respond
 
 __all__ = ["DrivenResponse", "DrivenSolution", "respond_driven"]
 
 Rows = tuple[tuple[Expression, ...], ...]
-
-
-@dataclass(frozen=True, repr=False)
-class DrivenSolution:
-    """The driven solution in one case (the only one, without parameters).
-
-    `columns` are the formulas of the columns of `functions`, r x c; `case` is that of the
-    stacked response, None without parameters.  What inputs that repeat add to it, from rest,
-    is in `periodic`, made of `periods`.  `stability` is that of the model's own matrix;
-    `resonances` are the tones of inputs that are eigenvalues of it.
-    """
-
-    model: DrivenModel
-    functions: DrivenFunctions
-    columns: Rows
-    case: Case | None
-    stability: Stability
-    periodic: tuple[PeriodicSolution, ...] = ()
-    periods: tuple[PeriodFunctions, ...] = ()
-    resonances: tuple[Resonance, ...] = ()
-
-    @property
-    def condition(self) -> str:
-        """The conditions of the case in plain notation; "true" where there is none."""
-        return "true" if self.case is None else self.case.condition
-
-    @cached_property
-    def drive(self) -> Drive:
-        """The tones of the inputs, with the equations of the case put in."""
-        branch = None if self.case is None else self.case.branch
-        return drive_of(self.model, self.put, None if branch is None else branch.relation)
-
-    def put(self, element: Scalar) -> Scalar:
-        """Return an element with the equations of the case put in."""
-        if self.case is None or not isinstance(self.model.field, ParameterField):
-            return element
-        return self.model.field.substituted(element, self.case.branch.values)
-
-    def sign_of(self, element: Scalar) -> SignArgument:
-        """Return the sign that an element has in the case, and why."""
-        domain = None if self.case is None else self.case.domain
-        return sign_oracle(self.model.field, domain)(element)
-
-    @cached_property
-    def steady_state(self) -> SteadyState | None:
-        """The last interval in its steady and its transient part, for a stable model."""
-        return steady_state(self.model, self.functions, self.columns, self.drive, self.sign_of)
-
-    @cached_property
-    def phasors(self) -> tuple[Phasor | None, ...]:
-        """Amplitude and phase of each row whose steady state oscillates; None for the others."""
-        return phasors_of(self.model, self.functions, self.drive, self.sign_of, self.put)
-
-    @cached_property
-    def solution(self) -> tuple[Expression, ...]:
-        """A formula for each row of the model, for all times: in the form with unit steps."""
-        functions, model = self.functions, self.model
-        return tuple(
-            step_formula(
-                model.field,
-                self.columns,
-                row,
-                functions.intervals[0],
-                functions.switches,
-                model.time,
-            )
-            for row in range(len(model.rows))
-        )
-
-    @cached_property
-    def pieces(self) -> tuple[tuple[Expression, ...], ...]:
-        """For each interval, a formula for each row."""
-        return tuple(self.in_interval(interval) for interval in self.functions.intervals)
-
-    def in_interval(self, interval: Interval) -> tuple[Expression, ...]:
-        """Return a formula for each row, of what an interval adds up."""
-        return tuple(
-            interval_formula(self.model.field, self.columns, row, interval, self.model.time)
-            for row in range(len(self.model.rows))
-        )
-
-    def of(self, summands: tuple[Summand, ...]) -> tuple[Expression, ...]:
-        """Return a formula for each row, of a part such as the free response."""
-        return self.in_interval(Interval(self.functions.intervals[0].start, None, summands))
 
 
 @dataclass(frozen=True, repr=False)
@@ -159,6 +82,53 @@ class DrivenResponse:
                 for name, formula in zip(self.model.rows, solution.solution, strict=True)
             ]
         return "\n".join(lines)
+
+    @property
+    def solution(self) -> FormulaColumn:
+        """The formulas of the only case.  Raises ValueError where there are several."""
+        if len(self.solutions) > 1:
+            raise ValueError("there are several cases; ask each of `solutions` for its solution")
+        return self.solutions[0].solution
+
+    def _repr_latex_(self) -> str:
+        """Return the solution as LaTeX for a notebook, a row for each case."""
+        cases = ((s.solution, () if s.case is None else s.case.conditions) for s in self.solutions)
+        return cases_latex(
+            [(column, [c.latex for c in conditions]) for column, conditions in cases]
+        )
+
+    def solution_at(
+        self,
+        t: Fraction | int,
+        digits: int = 30,
+        *,
+        values: Mapping[str, Fraction | int] | None = None,
+    ) -> list[arb]:
+        """Return balls for all rows at an instant, settled to `digits` digits.
+
+        At a switching they are the values just after it.  With parameters, `values` gives each
+        of them a number.
+        Raises:  ValuesNotCoveredError for values at which no case holds; ValueError where a
+                 parameter has none.
+        """
+        at, stacked = SurdSum.rational(t), self.stacked
+        if not isinstance(stacked, ParametricResponse):
+            (own,) = self.solutions
+            return enclosed_at(self.model.field, own.functions, at, digits, periods=own.periods)
+        given = {name: SurdSum.rational(value) for name, value in (values or {}).items()}
+        missing = [name for name in stacked.model.field.free if name not in given]
+        if missing:
+            raise ValueError(f"no value is given for {', '.join(missing)}")
+        case = case_at(stacked, ValueSet("", tuple(given.items())))
+        own = self.solutions[case.number]
+        known = known_at(stacked.model.field, case, given)
+        exact = in_field(self.model.field, own.functions, own.periods, values=given, times=(at,))
+        place, rows = (self.model.time, at), range(len(self.model.rows))
+
+        def balls() -> arb_mat:
+            return arb_mat([written_balls(exact, own.pieces, own.periodic, known, place, rows)])
+
+        return list(enclosed_to(balls, digits).entries())
 
     def instants(self) -> tuple[Expression, ...]:
         """Return the start and the timeline as formulas."""

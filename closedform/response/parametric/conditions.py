@@ -9,6 +9,7 @@ from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.notation.expression import Expression
+from closedform.notation.latex.formula import formula
 from closedform.notation.plain import plain
 from closedform.notation.rational_formula import rational_formula
 from closedform.response.parametric.modes import perfect_root
@@ -16,6 +17,8 @@ from closedform.response.parametric.modes import perfect_root
 __all__ = ["WrittenComparison", "written_comparison", "written_equation"]
 
 Sign = Literal["<", ">", "<=", ">=", "!=", "=="]
+LATEX_SIGNS = {"<": "<", ">": ">", "<=": r"\le", ">=": r"\ge", "!=": r"\neq", "==": "="}
+"""The signs of comparisons as LaTeX."""
 
 
 @dataclass(frozen=True)
@@ -28,6 +31,12 @@ class WrittenComparison:
 
     def __str__(self) -> str:
         return f"{plain(self.left)} {self.sign} {plain(self.right)}"
+
+    @property
+    def latex(self) -> str:
+        """The comparison as LaTeX for a notebook."""
+        sides = (formula(side).latex for side in (self.left, self.right))
+        return f" {LATEX_SIGNS[self.sign]} ".join(sides)
 
 
 def written_comparison(domain: ParameterDomain, comparison: Comparison) -> WrittenComparison:

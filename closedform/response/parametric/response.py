@@ -13,10 +13,9 @@ from closedform.algebra.field import FieldMatrix
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import regimes_of
 from closedform.model.parametric import ParametricModel
-from closedform.notation.latex.formula import formula
 from closedform.notation.plain import plain
 from closedform.notation.rational_formula import rational_formula
-from closedform.notation.shown import FormulaColumn
+from closedform.notation.shown import cases_latex
 from closedform.response.parametric.case import Case, Sought, WrittenQuantity
 from closedform.response.parametric.conditions import (
     WrittenComparison,
@@ -26,10 +25,6 @@ from closedform.response.parametric.conditions import (
 from closedform.response.parametric.writing import written_case
 
 __all__ = ["ParametricResponse", "respond_in_cases"]
-
-_RELATIONS = {"<": "<", ">": ">", "<=": r"\le", ">=": r"\ge", "!=": r"\neq", "==": "="}
-"""The signs of comparisons as LaTeX."""
-
 
 @dataclass(frozen=True, repr=False)
 class ParametricResponse:
@@ -91,23 +86,7 @@ class ParametricResponse:
 
     def _repr_latex_(self) -> str:
         """Return the solution as LaTeX for a notebook, a row for each case."""
-        if len(self.cases) == 1 and not self.cases[0].conditions:
-            return self.cases[0].solution._repr_latex_()
-        rows = [f"{_bare(case.solution)} & {_condition_latex(case)}" for case in self.cases]
-        body = r" \\[1ex] ".join(rows)
-        return rf"$\displaystyle \left\{{\begin{{array}}{{ll}} {body} \end{{array}}\right.$"
-
-
-def _bare(column: FormulaColumn) -> str:
-    return column._repr_latex_().strip("$")
-
-
-def _condition_latex(case: Case) -> str:
-    parts = [
-        f"{formula(c.left).latex} {_RELATIONS[c.sign]} {formula(c.right).latex}"
-        for c in case.conditions
-    ]
-    return r" \text{ and } ".join(parts)
+        return cases_latex([(c.solution, [k.latex for k in c.conditions]) for c in self.cases])
 
 
 def respond_in_cases(
