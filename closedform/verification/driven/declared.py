@@ -6,7 +6,7 @@ evaluated at instants inside of every interval, and at the instants themselves.
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import replace
 
 from flint import arb
@@ -28,19 +28,22 @@ _HIGHEST = 8
 """Derivatives of inputs up to this order; FLINT's series have ten coefficients."""
 
 
-def declared_check(setting: Setting) -> Iterator[Check]:
-    """Yield the check that the signals are the functions of the time that were declared."""
+def declared_check(setting: Setting, places: Iterable[int], intervals: int) -> Iterator[Check]:
+    """Yield the check that inputs are the functions of the time that were declared.
+
+    It is made for the inputs at some places, in the first so many intervals.
+    """
     given = {
-        f"input {k + 1}": (k, i, source)
-        for k, i in enumerate(setting.model.inputs)
-        if (source := _source(i)) is not None
+        f"input {k + 1}": (k, setting.model.inputs[k], source)
+        for k in places
+        if (source := _source(setting.model.inputs[k])) is not None
     }
     if not given or not setting.grounds:
         return
     findings = (
         finding
         for ground in setting.grounds
-        for k in range(setting.last + 1)
+        for k in range(intervals)
         for finding in (
             _values_finding(setting, ground, k, given),
             _impulses_finding(setting, ground, k, given),
@@ -60,9 +63,7 @@ _Given = dict[str, tuple[int, Input, Source]]
 
 
 def _source(given: Input) -> Source | None:
-    """What an input was declared to be; None where it has pieces, or repeats."""
-    if given.signal.repeat is not None:
-        return None
+    """What an input was declared to be; None where it has pieces."""
     formula = given.formula
     if not given.name:
         return formula, None, 0

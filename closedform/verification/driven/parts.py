@@ -12,7 +12,14 @@ from closedform.verification.driven.setting import Setting
 from closedform.verification.driven.sums import TimedSum
 from closedform.verification.record import Check
 
-__all__ = ["free_forced_check", "intervals_check", "jump_check", "sustained_check", "switch_check"]
+__all__ = [
+    "free_forced_check",
+    "intervals_check",
+    "is_of_inputs",
+    "jump_check",
+    "sustained_check",
+    "switch_check",
+]
 
 
 def intervals_check(setting: Setting) -> Check:
@@ -104,7 +111,7 @@ def sustained_check(setting: Setting) -> Check:
     if functions.sustained and functions.held != functions.sustained[-1].summands:
         return Check(item, "refuted", "what is held is not what is sustained in the last interval")
     sustained = functions.sustained or ()
-    own = [p for p in setting.factors if _is_of_inputs(setting, p)]
+    own = [p for p in setting.factors if is_of_inputs(setting, p)]
 
     def residuals() -> Iterator[Residual]:
         for k, interval in enumerate(sustained):
@@ -153,8 +160,8 @@ def jump_check(setting: Setting) -> Check:
     )
 
 
-def _is_of_inputs(setting: Setting, p: Polynomial) -> bool:
-    """Whether the roots of a factor are exponents of a wave of some input."""
+def is_of_inputs(setting: Setting, p: Polynomial) -> bool:
+    """Return whether the roots of a factor are exponents of a wave of some input."""
     one, field = setting.field.domain.one, setting.field
     for k in range(setting.last + 1):
         for place in range(len(setting.model.inputs)):

@@ -224,14 +224,15 @@ class Setting:
     def out_of_order(self) -> int | None:
         """Return the number of an instant that was not shown to come after the one before."""
         for number, (one, other) in enumerate(pairwise(self.instants), start=1):
-            if not self._is_positive(other - one):
+            if self.signs_of(other - one) != {1}:
                 return number
         return None
 
-    def _is_positive(self, element: Scalar) -> bool:
+    def signs_of(self, element: Scalar) -> set[int]:
+        """Return the signs that an element may have in the case."""
         if self.solution.case is None:
-            return self.field.sign(element) > 0
-        return self.solution.case.domain.sign_of(element).values == {1}
+            return {self.field.sign(element)}
+        return set(self.solution.case.domain.sign_of(element).values)
 
 
 def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:

@@ -14,8 +14,9 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from math import factorial
+from typing import Any
 
-from flint import acb, acb_poly, arb
+from flint import acb, acb_poly, arb, ctx
 
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
 from closedform.algebra.root_matrix import RootMatrix
@@ -198,7 +199,7 @@ def _over_roots(p: list[arb], by_power: list[list[arb]], s: arb) -> list[arb]:
         return [front * (b * even + (a + centre * b) * odd) for a, b in by_power]
     polynomial = acb_poly(list(reversed(p)))
     try:
-        roots = polynomial.roots()
+        roots: Any = polynomial.roots(tol=arb(2) ** (-ctx.prec * 3 // 4))
     except ValueError:  # not told apart at this precision
         return [arb("nan")] * len(by_power)
     slope = polynomial.derivative()

@@ -25,6 +25,11 @@ from closedform.verification.driven.periods import (
 )
 from closedform.verification.driven.reduction import reduction_checks
 from closedform.verification.driven.setting import Setting, setting_of
+from closedform.verification.driven.steady import (
+    phasor_checks,
+    stability_check,
+    steady_checks,
+)
 from closedform.verification.driven.typed import typed_check
 from closedform.verification.driven.written import defined_check, formula_check
 from closedform.verification.parametric.record import CaseRecords
@@ -58,12 +63,23 @@ def verify_driven(response: DrivenResponse) -> VerificationRecord | CaseRecords:
 def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterator[Check]:
     """Yield the checks of the driven solution in one case, every one of them."""
     setting = setting_of(response, solution)
+    repeats = [given.signal.repeat for given in response.model.inputs]
+    yield from declared_check(
+        setting, [k for k, r in enumerate(repeats) if r is None], setting.last + 1
+    )
+    yield from typed_check(setting)
+    yield from reduction_checks(setting)
     yield from _exact_checks(setting)
+    yield stability_check(setting)
+    yield from steady_checks(setting)
+    yield from phasor_checks(setting)
     yield formula_check(setting)
     if isinstance(response.stacked, ParametricResponse):
         yield defined_check(response.stacked, setting)
     for single, functions, written in period_settings(response, solution):
-        for check in _exact_checks(single):
+        places = [k for k, r in enumerate(repeats) if r == functions.repeat]
+        own = (*declared_check(single, places, single.last), *_exact_checks(single))
+        for check in own:
             yield replace(check, item=f"one period: {check.item}")
         yield blow_check(single, functions)
         yield period_formula_check(single, written)
@@ -71,9 +87,6 @@ def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterato
 
 def _exact_checks(setting: Setting) -> Iterator[Check]:
     yield intervals_check(setting)
-    yield from declared_check(setting)
-    yield from typed_check(setting)
-    yield from reduction_checks(setting)
     if setting.model.balances:
         yield balance_check(setting)
     yield state_form_check(setting)

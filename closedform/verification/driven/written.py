@@ -116,6 +116,12 @@ def _written(setting: Setting, k: int) -> Iterator[tuple[str, _Written]]:
         ("sustained part", solution.in_interval(i), _exact(setting.total(i.summands)))
         for i in functions.sustained[k : k + 1]
     ]
+    steady = solution.steady_state if k == setting.last else None
+    if steady is not None:
+        kinds += [
+            ("steady part", steady.steady_formulas, _exact(setting.total(steady.steady))),
+            ("transient part", steady.transient_formulas, _exact(setting.total(steady.transient))),
+        ]
     for kind, formulas, value in kinds:
         for row, (name, formula) in enumerate(zip(setting.model.rows, formulas, strict=True)):
             yield f"{kind} of {name}", _Written(formula, row, value)
