@@ -13,7 +13,6 @@ import dataclasses
 from collections.abc import Hashable, Iterable, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
-from math import factorial
 
 from closedform.algebra.field import BaseField, Polynomial, Scalar
 from closedform.algebra.surds import SurdSum
@@ -98,10 +97,7 @@ class _Sums:
         """Add constant times what a term is, s after its origin."""
         number = self.field.domain.convert
         entries = term.entries[row][column]
-        held = [
-            sum((c * s**j / number(factorial(j)) for j, c in enumerate(own)), number(0))
-            for own in zip(*entries, strict=True)
-        ]
+        held = [_sum_of_powers(own, s, number(0)) for own in zip(*entries, strict=True)]
         if not any(held):
             return
         for factor, angle in _turning(self.field, constant):
@@ -145,6 +141,14 @@ class _Sums:
         own = self.single.setdefault(key, _Sum(growth, angle, zero, zero))
         own.real += amount[0]
         own.imaginary += amount[1]
+
+
+def _sum_of_powers(coefficients: Sequence[Scalar], s: Scalar, zero: Scalar) -> Scalar:
+    """The sum of c_j s^j/j!."""
+    total = zero
+    for j in range(len(coefficients) - 1, -1, -1):
+        total = total * s / (j + 1) + coefficients[j]
+    return total
 
 
 def _weights(
