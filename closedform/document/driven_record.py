@@ -28,7 +28,7 @@ from closedform.notation.expression import (
 )
 from closedform.notation.plain import plain
 from closedform.notation.terms import negated, opened, sum_of, surd_formula
-from closedform.response.driven.composition import scaled
+from closedform.response.driven.composition import scaled, shifted
 from closedform.response.driven.numbers import DrivenNumbersAt
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.parametric.response import ParametricResponse
@@ -174,7 +174,9 @@ def _burst(writing: Writing, burst: Burst) -> Expression:
     """The waves of a burst, with a unit step for each end that it has."""
     waves = waves_formula(writing, burst.waves)
     steps = [
-        None if at is None else Call("step", sum_of([writing.t, negated(writing.element(at))]))
+        None
+        if at is None
+        else Call("step", shifted(writing.t, writing.model.time, writing.element(at)))
         for at in (burst.start, burst.end)
     ]
     match steps:

@@ -8,7 +8,7 @@ Nothing of the package is used.
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from fractions import Fraction
 from itertools import pairwise
 from typing import Any
@@ -41,6 +41,8 @@ Jet = tuple[Number, Number]
 BITS = 400
 DIGITS = 25
 LATER = (Fraction(1, 3), Fraction(7, 5))
+ONE = Fraction(1)
+PERIODS = (1, 2, 5)
 SHARES = (Fraction(1, 5), Fraction(2, 3))
 
 
@@ -174,6 +176,8 @@ def _names(text: str, allowed: set[str]) -> None:
 
 def _check(record: Record, case: Record, known: Mapping[str, Number]) -> None:
     here = _Case(record, case, known)
+    for own in case.get("periodic", ()):
+        _Periodic(here, own).check()
     instants = [here.number(text) for text in (record["start"], *record["instants"])]
     pieces = case.get("pieces", [{**case, "from": record["start"], "to": None}])
     if len(pieces) != len(instants):
@@ -203,17 +207,21 @@ class _Case:
         self.inputs = {
             name: entry for name, entry in record["inputs"].items() if "repeat" not in entry
         }
-        places = [k for k, name in enumerate(record["inputs"]) if name in self.inputs]
-        rows = record.get("input_matrix", [[] for _ in self.matrix])
-        self.feed = [[self.number(row[k]) for k in places] for row in rows]
+        self.feed = self.columns(self.inputs)
+
+    def columns(self, names: Iterable[str]) -> list[list[Number]]:
+        """The columns of the input matrix that belong to these inputs."""
+        places = [list(self.record["inputs"]).index(name) for name in names]
+        rows = self.record.get("input_matrix", [[] for _ in self.matrix])
+        return [[self.number(row[k]) for k in places] for row in rows]
 
     def number(self, text: str) -> Number:
         return value(parse(text, DRIVEN_FUNCTIONS), self.known)
 
-    def at(self, text: str, t: Number) -> Jet:
-        time = self.record["time"]
+    def at(self, text: str, t: Number, **more: Jet) -> Jet:
         known: dict[str, Jet] = {name: (v, Fraction(0)) for name, v in self.known.items()}
-        return jet(parse(text, DRIVEN_FUNCTIONS), {**known, time: (t, Fraction(1))})
+        known |= more or {self.record["time"]: (t, Fraction(1))}
+        return jet(parse(text, DRIVEN_FUNCTIONS), known)
 
     def values(self, texts: Sequence[str], t: Number) -> list[Number]:
         return [self.at(text, t)[0] for text in texts]
@@ -234,8 +242,12 @@ class _Case:
         self.same(self.values(after["solution"], at), expected, "a switching")
 
     def blows(self, at: Number) -> list[Number]:
+        return _times(self.feed, self.struck(self.inputs, at))
+
+    def struck(self, inputs: Mapping[str, Any], at: Number) -> list[Number]:
+        """What strikes at an instant, by input."""
         amounts: list[Number] = []
-        for entry in self.inputs.values():
+        for entry in inputs.values():
             total: Number = Fraction(0)
             for impulse in entry["impulses"]:
                 gap = _add(self.number(impulse["at"]), -at)
@@ -244,7 +256,7 @@ class _Case:
                 ):
                     total = _add(total, self.number(impulse["amount"]))
             amounts.append(total)
-        return _times(self.feed, amounts)
+        return amounts
 
     def holds(self, piece: Record, t: Number) -> None:
         """Inside an interval: the equation, and every way to say what the solution is."""
@@ -316,6 +328,77 @@ class _Case:
                 raise DisagreementError(
                     f"{what}: {k} is {ball_of(ours).str(15)}, not {ball_of(theirs).str(15)}"
                 )
+
+
+class _Periodic:
+    """What inputs that repeat add: from rest, the equation in every period, and the joins."""
+
+    def __init__(self, here: _Case, own: Record) -> None:
+        self.here, self.own = here, own
+        self.start, self.period = here.number(own["start"]), here.number(own["period"])
+        self.inputs = {
+            name: entry
+            for name, entry in here.record["inputs"].items()
+            if "repeat" in entry and entry["repeat"]["period"] == own["period"]
+        }
+        self.feed = here.columns(self.inputs)
+        self.bounds = [here.number(s["from"]) for s in own["stretches"]]
+        self.ends = [here.number(s["to"]) for s in own["stretches"]]
+
+    def check(self) -> None:
+        here, count = self.here, self.own.get("count")
+        here.same(self.states(0, 1, Fraction(0)), self.blows(Fraction(0)), "the first period")
+        shown = [n for n in PERIODS if count is None or n <= count]
+        for n in shown:
+            for place, (low, high) in enumerate(zip(self.bounds, self.ends, strict=True)):
+                for share in SHARES:
+                    self.holds(place, n, _add(low, _mul(_add(high, -low), share)))
+                if place:
+                    before = self.states(place - 1, n, low)
+                    expected = _sums(before, self.blows(low))
+                    here.same(self.states(place, n, low), expected, f"within period {n}")
+            last = self.states(len(self.bounds) - 1, n, self.period)
+            if n == count:
+                self.after(last, n)
+            else:
+                again = _sums(last, self.blows(Fraction(0)))
+                here.same(self.states(0, n + 1, Fraction(0)), again, f"after period {n}")
+        if "steady" in self.own:
+            self.own = {**self.own, "stretches": self.own["steady"]}
+            for place, low in enumerate(self.bounds):
+                self.holds(place, 1, _add(low, _mul(_add(self.ends[place], -low), SHARES[0])))
+            again = _sums(
+                self.states(len(self.bounds) - 1, 1, self.period), self.blows(Fraction(0))
+            )
+            here.same(self.states(0, 1, Fraction(0)), again, "the periodic steady state")
+
+    def jets(self, place: int, n: int, local: Number) -> list[Jet]:
+        names = {self.own["number"]: (Fraction(n), Fraction(0)), self.own["local"]: (local, ONE)}
+        texts = self.own["stretches"][place]["solution"]
+        return [self.here.at(text, local, **names) for text in texts]
+
+    def states(self, place: int, n: int, local: Number) -> list[Number]:
+        return [x for x, _ in self.jets(place, n, local)]
+
+    def blows(self, local: Number) -> list[Number]:
+        struck = self.here.struck(self.inputs, _add(self.start, local))
+        return _times(self.feed, struck)
+
+    def holds(self, place: int, n: int, local: Number) -> None:
+        jets = self.jets(place, n, local)
+        at = _add(self.start, local)
+        driven = [self.here.at(entry["function"], at)[0] for entry in self.inputs.values()]
+        slopes = _sums(_times(self.here.matrix, [x for x, _ in jets]), _times(self.feed, driven))
+        self.here.same([d for _, d in jets], slopes, f"the equation in period {n}")
+
+    def after(self, last: Sequence[Number], count: int) -> None:
+        """When all periods are over it goes on, driven by nothing."""
+        end = _add(self.start, _mul(Fraction(count), self.period))
+        texts = self.own["after"]["solution"]
+        self.here.same(self.here.values(texts, end), last, "the end of all periods")
+        jets = [self.here.at(text, _add(end, LATER[0])) for text in texts]
+        slopes = _times(self.here.matrix, [x for x, _ in jets])
+        self.here.same([d for _, d in jets], slopes, "the time after all periods")
 
 
 def _texts(rows: Sequence[str] | Mapping[str, str]) -> list[str]:
