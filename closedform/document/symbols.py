@@ -35,6 +35,10 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     blocks                     indices: number of columns; parts   [A, B; 0, W]
     interval                   indices: both, from, until or       a <= t < b
                                otherwise; argument [t]; parts
+    sinusoid                   parts: amplitude, angle, phase      a cos(omega t - phi)
+    turn                       indices: above, below               3 pi/4
+    arc                        indices: sign; parts: turn, ratio   pi - arctan r
+    angle of                   parts: y, x                         angle of the point (x, y)
     cases                      parts: value, interval, …           { 0, t < a; 1, otherwise
 
 A letter that ends in _hat has a wide hat.
@@ -335,6 +339,41 @@ def _interval(symbol: Symbol) -> Box:
     raise ValueError(f"no kind of interval is called {kind!r}")
 
 
+def _sinusoid(symbol: Symbol) -> Box:
+    amplitude, angle, phase = symbol.parts
+    inside = joined(side_box(angle), plain(" - ", BINARY), side_box(phase))
+    front = side_box(amplitude)
+    if _binds_loosely(amplitude):
+        front = bracketed(front)
+    one = isinstance(amplitude, Number) and amplitude.value == 1
+    head = [] if one else [front, plain(r"\,", 0.2)]
+    return joined(*head, plain(r"\cos", 1.2), bracketed(inside))
+
+
+def _turn(symbol: Symbol) -> Box:
+    above, below = map(int, symbol.indices)
+    size = "" if abs(above) == 1 else str(abs(above))
+    sign = "-" if above < 0 else ""
+    if below == 1:
+        return plain("0" if above == 0 else rf"{sign}{size}\uppi", 1.8)
+    return Box(rf"{sign}\frac{{{size}\uppi}}{{{below}}}", 2.0, 2)
+
+
+def _arc(symbol: Symbol) -> Box:
+    *turns, ratio = symbol.parts
+    value = joined(plain(r"\arctan", 2.9), bracketed(side_box(ratio)))
+    negative = symbol.indices == ("-",)
+    if not turns:
+        return joined(plain("-", 0.8), value) if negative else value
+    return joined(side_box(turns[0]), plain(" - " if negative else " + ", BINARY), value)
+
+
+def _angle_of(symbol: Symbol) -> Box:
+    y, x = map(side_box, symbol.parts)
+    point = bracketed(joined(x, plain(r",\, ", 0.4), y))
+    return joined(plain(r"\angle", 0.8), point)
+
+
 def _cases(symbol: Symbol) -> Box:
     values = [side_box(part) for part in symbol.parts[::2]]
     places = [side_box(part) for part in symbol.parts[1::2]]
@@ -378,4 +417,8 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "blocks": _blocks,
     "interval": _interval,
     "cases": _cases,
+    "sinusoid": _sinusoid,
+    "turn": _turn,
+    "arc": _arc,
+    "angle of": _angle_of,
 }

@@ -2,9 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import replace
+from typing import Any
 
+from closedform.derivation.driven.closing_steps import (
+    resonance_step,
+    stability_step,
+    steady_step,
+    transient_step,
+)
 from closedform.derivation.driven.generator_steps import generator_step
 from closedform.derivation.driven.model_steps import driven_model_step
 from closedform.derivation.driven.proof.spot import Spot
@@ -19,6 +26,8 @@ from closedform.derivation.driven.solution_steps import (
     split_step,
 )
 from closedform.derivation.driven.state_steps import state_form_step
+from closedform.derivation.driven.substitution_steps import substitution_step
+from closedform.derivation.driven.values_steps import driven_numbers_step
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.case_steps import cases_step
 from closedform.derivation.parametric.definitions import definitions_of
@@ -30,6 +39,7 @@ from closedform.derivation.parametric.model_steps import (
     parameters_step,
 )
 from closedform.derivation.parametric.proof.ground import Ground, defined_in
+from closedform.derivation.parametric.proof.numbers import Given
 from closedform.derivation.parametric.proof.statements import prove_case_statements
 from closedform.derivation.parametric.result_steps import branch_step
 from closedform.derivation.parametric.variables import names_of
@@ -59,12 +69,19 @@ def in_cases(
     """Return the derivation of a driven response with parameters."""
     model = response.model
     steps = tuple(_steps(response, stacked, records))
+    in_numbers = driven_numbers_step(response, numbers, digits)
+    steps = steps if in_numbers is None else (*steps, in_numbers)
     inner = [step for step in steps if step.kind in _OF_THE_MATRIX]
     own = [step for step in steps if step.kind not in _OF_THE_MATRIX]
     checks = (
         *records.whole.checks,
         _on_the_matrix(prove_case_statements(stacked, inner)),
-        prove_driven_statements(model, own, _spots(response, stacked, inner)),
+        prove_driven_statements(
+            model,
+            own,
+            _spots(response, stacked, inner),
+            _sets(response, stacked, inner, in_numbers),
+        ),
     )
     if model.generator is not None:
         kept = ("parameters", "not_covered")
@@ -128,12 +145,14 @@ def _steps(
             yield cases_step(stacked)
             yield from exponential_steps(stacked, cases, letters)
         solutions = [response.solutions[case.number] for case in cases]
-        yield from _results(writing, solutions, len(stacked.cases))
+        yield from _results(response, solutions, len(stacked.cases))
 
 
-def _results(writing: Writing, solutions: Sequence[DrivenSolution], count: int) -> Iterator[Step]:
+def _results(
+    response: DrivenResponse, solutions: Sequence[DrivenSolution], count: int
+) -> Iterator[Step]:
     """The steps of the cases of one branch, those that read alike told once."""
-    alone = len(solutions) == 1
+    writing, alone = Writing(response.model), len(solutions) == 1
     told = [(s, case_facts(s, count, alone=alone)) for s in solutions]
     rows = [s.case.transition if s.case is not None else () for s in solutions]
     made = [
@@ -144,13 +163,28 @@ def _results(writing: Writing, solutions: Sequence[DrivenSolution], count: int) 
         [particular_step(writing, *pair) for pair in told],
         [jumps_step(writing, *pair) for pair in told],
         [driven_solution_step(writing, *pair) for pair in told],
-        [step for pair in told if (step := split_step(writing, *pair)) is not None],
+        _some(split_step(writing, *pair) for pair in told),
+        [stability_step(writing, *pair) for pair in told],
+        _some(steady_step(writing, *pair) for pair in told),
+        _some(transient_step(writing, *pair) for pair in told),
+        _first(_some(substitution_step(response, *pair) for pair in told)),
     ]
+    if solutions[0].resonances and solutions[0].case is not None:
+        yield from _alike(_some(resonance_step(writing, *pair) for pair in told), len(solutions))
     for steps in made:
         yield from _alike(steps, len(solutions))
 
 
 _OF_ONE_CASE = ("cases", "number", "numbers", "conditions")
+
+
+def _first(steps: Sequence[Step]) -> list[Step]:
+    """The steps, of which only that of the first case of all is printed in a working document."""
+    return [s if 0 in _tuple(s.facts["cases"]) else replace(s, depth="full") for s in steps]
+
+
+def _some(steps: Iterable[Step | None]) -> list[Step]:
+    return [step for step in steps if step is not None]
 
 
 def _alike(steps: Sequence[Step], count: int) -> list[Step]:
@@ -162,7 +196,10 @@ def _alike(steps: Sequence[Step], count: int) -> list[Step]:
             found.append(step)
         else:
             found[place] = _joined(found[place], step)
-    return [replace(s, facts={**s.facts, "whole": len(_tuple(s.facts["cases"])) == count}) for s in found]
+    return [
+        replace(s, facts={**s.facts, "whole": len(_tuple(s.facts["cases"])) == count})
+        for s in found
+    ]
 
 
 def _same(step: Step, other: Step) -> bool:
@@ -197,6 +234,22 @@ def _spots(
             raise UnprovedError(response.model.name, (check,))
         grounds = [Ground(stacked, case, point, definitions) for point in points]
         found.append((case.number, _maker(solution, grounds)))
+    return found
+
+
+def _sets(
+    response: DrivenResponse,
+    stacked: ParametricResponse,
+    inner: Sequence[Step],
+    step: Step | None,
+) -> list[tuple[Mapping[str, Any], Made]]:
+    """The sets of values that are put in, each as the point that it is."""
+    definitions = tuple(defined_in(inner, len(stacked.cases)))
+    rows: Any = [] if step is None else step.facts["sets"]
+    found = []
+    for row in rows:
+        ground = Ground(stacked, stacked.cases[row["case"]], Given(row["values"]), definitions)
+        found.append((row, _maker(response.solutions[row["case"]], [ground])))
     return found
 
 

@@ -14,7 +14,7 @@ from closedform.notation.expression import ONE, ZERO, Call, Expression, power_of
 from closedform.notation.terms import negated, opened, sum_of
 from closedform.response.driven.composition import shifted
 
-__all__ = ["impulses_of", "signal_side", "waves_formula"]
+__all__ = ["impulses_of", "signal_side", "waves_formula", "waves_in"]
 
 OTHERWISE = Symbol("interval", ("otherwise",))
 Piece = tuple[Scalar | None, Scalar | None, Expression]
@@ -51,6 +51,19 @@ def signal_side(writing: Writing, signal: Signal) -> Side:
     if not parts:
         return ZERO
     return parts[0] if len(parts) == 1 else Symbol("sum", parts=tuple(parts))
+
+
+def waves_in(writing: Writing, column: int, place: int) -> list[Wave]:
+    """Return the waves of an input that are on in the interval at a place."""
+    model = writing.model
+    order = {at: k for k, at in enumerate((model.start, *model.timeline))}
+    found: list[Wave] = []
+    for burst in model.inputs[column].signal.bursts:
+        first = 0 if burst.start is None else order[burst.start]
+        last = len(order) if burst.end is None else order[burst.end]
+        if first <= place < last:
+            found += burst.waves
+    return found
 
 
 def impulses_of(writing: Writing, signal: Signal) -> Expression:

@@ -9,6 +9,12 @@ from flint import acb
 
 from closedform.derivation.abbreviations import abbreviations_step
 from closedform.derivation.canonical_steps import canonical_steps
+from closedform.derivation.driven.closing_steps import (
+    resonance_step,
+    stability_step,
+    steady_step,
+    transient_step,
+)
 from closedform.derivation.driven.generator_steps import generator_step
 from closedform.derivation.driven.model_steps import driven_model_step
 from closedform.derivation.driven.proof.spot import Spot
@@ -23,6 +29,8 @@ from closedform.derivation.driven.solution_steps import (
     split_step,
 )
 from closedform.derivation.driven.state_steps import state_form_step
+from closedform.derivation.driven.substitution_steps import substitution_step
+from closedform.derivation.driven.values_steps import driven_values_step
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import said_in
 from closedform.derivation.proof.evaluation import expressions_in
@@ -56,6 +64,7 @@ def in_numbers(
     (solution,) = response.solutions
     facts = case_facts(solution, 1)
     opening = [driven_model_step(writing), state_form_step(writing), generator_step(writing)]
+    resonance = resonance_step(writing, solution, facts)
     inner = list(_of_the_matrix(stacked, digits))
     results: list[Step] = []
     forms = stacked.closed_forms
@@ -67,15 +76,22 @@ def in_numbers(
         jumps_step(writing, solution, facts),
         driven_solution_step(writing, solution, facts),
     ]
-    split = split_step(writing, solution, facts)
-    results += [] if split is None else [split]
+    more = (
+        split_step(writing, solution, facts),
+        stability_step(writing, solution, facts),
+        steady_step(writing, solution, facts),
+        transient_step(writing, solution, facts),
+        substitution_step(response, solution, facts),
+    )
+    results += [step for step in more if step is not None]
     abbreviations = abbreviations_step(stacked, names_printed(results), digits)
     inner += [] if abbreviations is None else [abbreviations]
-    own = [step for step in (*opening, *results) if step is not None]
+    values = driven_values_step(writing, solution, facts, digits)
+    own = [step for step in (*opening, resonance, *results, values) if step is not None]
 
     def spots() -> tuple[Spot, ...]:
-        values = constant_values(forms.constants)
-        known = {name: acb(value) for name, value in values.items()}
+        balls = constant_values(forms.constants)
+        known = {name: acb(ball) for name, ball in balls.items()}
         return (Spot(solution, known, lambda e: acb(stacked.field.enclose(e))),)
 
     checks = (
@@ -88,8 +104,10 @@ def in_numbers(
     first = [step for step in opening if step is not None]
     last = inner[-1:] if abbreviations is not None else []
     middle = inner[:-1] if abbreviations is not None else inner
+    if resonance is not None:
+        middle = [*middle[:2], resonance, *middle[2:]]
     ends = (verification_step(checks, model.time), cautions_step())
-    return Derivation(model.title, (*first, *middle, *results, *last, *ends), checks)
+    return Derivation(model.title, (*first, *middle, *results, *last, values, *ends), checks)
 
 
 def names_printed(steps: Sequence[Step]) -> frozenset[str]:

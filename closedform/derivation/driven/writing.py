@@ -116,6 +116,15 @@ class Writing:
         return tuple(_label(given, k, taken) for k, given in enumerate(model.inputs, start=1))
 
     @property
+    def root(self) -> Name:
+        """The variable of characteristic polynomials: lambda, unless the model uses it."""
+        model = self.model
+        names = {*model.rows, *model.unknowns, model.time, *(i.name for i in model.inputs)}
+        names |= set(getattr(model.field, "parameters", ()))
+        taken = {printed_key(name).split("_")[0] for name in names}
+        return Name(next(letter for letter in ("lambda", "s", "z", "xi") if letter not in taken))
+
+    @property
     def is_scalar(self) -> bool:
         """Whether there is one state: then its vectors are numbers."""
         return len(self.model.names) == 1

@@ -33,6 +33,7 @@ __all__ = [
     "in_interval",
     "jump",
     "particular",
+    "row_of",
     "shape",
     "solution",
     "upper",
@@ -187,7 +188,8 @@ def _summand(
     return state
 
 
-def _row_of(spot: Spot, symbol: Side, *, index: str = "") -> int | None:
+def row_of(spot: Spot, symbol: Side, *, index: str = "") -> int | None:
+    """Return the place of the row that a function is, with an index perhaps; None for none."""
     model = spot.model
     indices = (index,) if index else ()
     if not isinstance(symbol, Symbol) or symbol.kind != "scalar" or symbol.indices != indices:
@@ -216,7 +218,7 @@ def _function(
     spot: Spot, said: Said, places: range, *, forced: bool, index: str = ""
 ) -> Iterator[Finding]:
     symbol, side = said.statement.sides
-    row = _row_of(spot, symbol, index=index)
+    row = row_of(spot, symbol, index=index)
     if row is None:
         yield Fault(said.statement.says, "it is of no state and no output of the model")
         return
@@ -235,7 +237,7 @@ def _function(
 def free(spot: Spot, said: Said) -> Iterator[Finding]:
     """The response to the initial values alone."""
     symbol, formula = said.statement.sides
-    row = _row_of(spot, symbol, index="free")
+    row = row_of(spot, symbol, index="free")
     if row is None:
         yield Fault("free response", "it is of no state and no output of the model")
         return

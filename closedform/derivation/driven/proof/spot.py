@@ -222,3 +222,12 @@ class Spot:
     def slope(self, state: acb_mat, inputs: acb_mat) -> acb_mat:
         """Return A x + B u."""
         return self.a * state if self.b is None else self.a * state + self.b * inputs
+
+    def size_at(self, t: acb) -> arb:
+        """Return the size of what the solution at an instant is made from."""
+        place = self.place_at(t)
+        state = self.motion[place]
+        moved = (self.stacked * (t - self.instants[place])).exp()
+        size = max((abs(e).upper() for e in moved.entries()), default=arb(1))
+        whole = [*state.entries(), *self.generated(place, self.instants[place])]
+        return size * (1 + sum((abs(e).upper() for e in whole), arb(0)))

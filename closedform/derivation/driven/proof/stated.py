@@ -43,6 +43,7 @@ __all__ = [
     "initial_value",
     "input_matrix",
     "input_vector",
+    "named_at",
     "named_velocity",
     "output_definition",
     "same_matrix",
@@ -63,7 +64,7 @@ def _trial(spot: Spot) -> Iterator[tuple[int, acb, acb_mat, acb_mat]]:
         yield place, t, state, spot.inputs_at(place, t)
 
 
-def _named(spot: Spot, t: acb, state: acb_mat, inputs: acb_mat) -> dict[str, Any]:
+def named_at(spot: Spot, t: acb, state: acb_mat, inputs: acb_mat) -> dict[str, Any]:
     """Every name of the model at an instant: jets as they are typed and as states."""
     model = spot.model
     names: dict[str, Any] = {**spot.names, model.time: t}
@@ -110,7 +111,7 @@ def equation(spot: Spot, said: Said) -> Iterator[Finding]:
     """An equation as typed, for any state: it follows from the state form."""
     left, right = (_with_inputs(spot, formula_of(side)) for side in said.statement.sides)
     for _, t, state, inputs in _trial(spot):
-        names = _named(spot, t, state, inputs)
+        names = named_at(spot, t, state, inputs)
         values = [formula_at(side, names, names) for side in (left, right)]
         yield equal("equation", *values)
 
@@ -227,7 +228,7 @@ def output_definition(spot: Spot, said: Said) -> Iterator[Finding]:
         yield Fault("output", f"the model has no output {name}")
         return
     for _, t, state, inputs in _trial(spot):
-        names = _named(spot, t, state, inputs)
+        names = named_at(spot, t, state, inputs)
         expected = spot.rows_of(state, inputs)[model.rows.index(name.text)]
         yield equal(f"output {name.text}", ball_at(formula_of(formula), names), expected)
 
@@ -246,7 +247,7 @@ def solved(spot: Spot, said: Said) -> Iterator[Finding]:
     """A highest derivative by states and inputs."""
     jet, formula = said.statement.sides
     for _, t, state, inputs in _trial(spot):
-        names = _named(spot, t, state, inputs)
+        names = named_at(spot, t, state, inputs)
         value = ball_at(formula_of(formula), names)
         yield equal("highest derivative", ball_at(formula_of(jet), names), value)
 

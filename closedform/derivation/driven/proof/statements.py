@@ -9,12 +9,15 @@ Source:  F. Johansson, Arb: efficient arbitrary-precision midpoint-radius interv
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
+from functools import partial
+from typing import Any
 
 from flint import ctx
 
-from closedform.derivation.driven.proof import generated, motion, stated
+from closedform.derivation.driven.proof import closing, generated, motion, stated, tables
 from closedform.derivation.driven.proof.spot import Spot
+from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import Said, said_in
 from closedform.derivation.proof.evaluation import expressions_in
 from closedform.derivation.proof.finding import Comparison, Fault, Finding, StatementRefutedError
@@ -32,6 +35,12 @@ _MOST_BITS = 1 << 14
 Prover = Callable[[Spot, Said], Iterator[Finding]]
 Made = Callable[[], tuple[Spot, ...]]
 """The points of a case, made afresh at FLINT's current precision."""
+
+
+def within(_spot: Spot, _said: Said) -> Iterator[Finding]:
+    """Proved with the set of values that it stands in."""
+    yield from ()
+
 
 PROVERS: dict[str, Prover] = {
     "case condition": stated.condition,
@@ -80,22 +89,46 @@ PROVERS: dict[str, Prover] = {
     "in interval": motion.in_interval,
     "free": motion.free,
     "forced": motion.forced,
+    "term": closing.term,
+    "balance": closing.balance,
+    "shared tone": closing.shared_tone,
+    "polynomial of A": closing.polynomial_of_a,
+    "factor of A": closing.factor_of_a,
+    "Hurwitz determinant": closing.hurwitz_determinant,
+    "sign": stated.condition,
+    "identity": closing.identity,
+    "steady": closing.steady,
+    "transient": closing.transient,
+    "by amplitude": closing.by_amplitude,
+    "phase": closing.phase,
+    "given value": within,
+    "in numbers": within,
 }
 """What proves each statement, by what it says."""
 
-_COMPARING = frozenset({"case condition"})
+TABLES: dict[str, Callable[[Spot, Step], Iterator[Finding]]] = {
+    "stability": closing.stability,
+    "driven_values": tables.value_rows,
+}
+"""What proves the tables and verdicts of a step, by its kind."""
+
+_COMPARING = frozenset({"case condition", "sign", "in numbers"})
 """What asks for the relation of a statement; the others prove that sides are equal."""
 
-_OF_THE_MODEL = frozenset({"driven_model", "state_form", "input_system"})
+_OF_THE_MODEL = frozenset({"driven_model", "state_form", "input_system", "substitution"})
 """Steps in which the names of the model's functions stand for themselves."""
 
 
 def prove_driven_statements(
-    model: DrivenModel, steps: Sequence[Step], spots: Sequence[tuple[int, Made]]
+    model: DrivenModel,
+    steps: Sequence[Step],
+    spots: Sequence[tuple[int, Made]],
+    sets: Sequence[tuple[Mapping[str, Any], Made]] = (),
 ) -> Check:
     """Return the check that every statement of the driven steps holds as printed.
 
-    `spots` are the cases by number, each with what makes its points.
+    `spots` are the cases by number, each with what makes its points; `sets` are the sets of
+    values that are put in, each with what makes the point that it is.
 
     Raises:  StatementRefutedError for the first that does not hold, or that uses a name that
              is not defined; UnprovedError if there is none, but some are left open;
@@ -110,7 +143,11 @@ def prove_driven_statements(
             raise ValueError(f"{s.statement.says!r} is said with {s.statement.relation!r}")
     for number, make in spots:
         mine = [s for s in said if number in s.cases]
-        _settle(model, mine, make)
+        here = [s for s in steps if s.kind in TABLES and number in _cases(s, count)]
+        _settle(model, make, partial(_findings, model, mine, here))
+    for step in steps:
+        for held, make in sets if step.kind == "driven_numbers" else ():
+            _settle(model, make, partial(_of_a_set, step, held))
     return Check(
         "statements of the derivation",
         "enclosed",
@@ -119,11 +156,31 @@ def prove_driven_statements(
     )
 
 
-def _settle(model: DrivenModel, said: Sequence[Said], make: Made) -> None:
+def _cases(step: Step, count: int) -> tuple[int, ...]:
+    cases: Any = step.facts.get("cases", tuple(range(count)))
+    return tuple(cases)
+
+
+def _findings(
+    model: DrivenModel, said: Sequence[Said], steps: Sequence[Step], spot: Spot
+) -> Iterator[Finding]:
+    for s in said:
+        yield from _undefined(model, spot, s)
+        yield from PROVERS[s.statement.says](spot, s)
+    for step in steps:
+        yield from TABLES[step.kind](spot, step)
+
+
+def _of_a_set(step: Step, held: Mapping[str, Any], spot: Spot) -> Iterator[Finding]:
+    yield from tables.number_set(spot, step, held)
+
+
+def _settle(model: DrivenModel, make: Made, find: Callable[[Spot], Iterator[Finding]]) -> None:
+    """Prove what is found at some points, more and more finely."""
     bits = _FIRST_BITS
     while True:
         with ctx.workprec(bits):
-            wide = [w for spot in make() for w in _wide(model, spot, said)]
+            wide = [w for spot in make() for w in _wide(model, find(spot))]
         if not wide:
             return
         if bits >= _MOST_BITS:
@@ -138,25 +195,26 @@ def _settle(model: DrivenModel, said: Sequence[Said], make: Made) -> None:
     raise UnprovedError(model.name, tuple(Check(p, "not attempted", how) for p in places))
 
 
-def _wide(model: DrivenModel, spot: Spot, said: Sequence[Said]) -> Iterator[Comparison]:
+def _wide(model: DrivenModel, findings: Iterator[Finding]) -> Iterator[Comparison]:
     """Yield what this precision does not settle; raise at the first thing that is wrong."""
-    for s in said:
-        for finding in (*_undefined(model, spot, s), *PROVERS[s.statement.says](spot, s)):
-            if isinstance(finding, Fault):
-                raise StatementRefutedError(model.name, finding.place, finding.reason)
-            if finding.is_apart:
-                raise StatementRefutedError(
-                    model.name,
-                    str(finding),
-                    f"printed is {finding.printed.str(8)}, and true {finding.expected.str(8)}",
-                )
-            if not finding.is_settled:
-                yield finding
+    for finding in findings:
+        if isinstance(finding, Fault):
+            raise StatementRefutedError(model.name, finding.place, finding.reason)
+        if finding.is_apart:
+            raise StatementRefutedError(
+                model.name,
+                str(finding),
+                f"printed is {finding.printed.str(8)}, and true {finding.expected.str(8)}",
+            )
+        if not finding.is_settled:
+            yield finding
 
 
 def _undefined(model: DrivenModel, spot: Spot, said: Said) -> Iterator[Fault]:
     """Every name in a formula is defined in print."""
     known = {model.time, *spot.names}
+    if said.step.kind == "stability":
+        known.add(Writing(model).root.text)
     own = {*model.rows, *model.unknowns, *(i.name for i in model.inputs)}
     for side in said.statement.sides:
         for formula in expressions_in(side):
@@ -167,7 +225,5 @@ def _undefined(model: DrivenModel, spot: Spot, said: Said) -> Iterator[Fault]:
 
 
 def _is_label(model: DrivenModel, name: str) -> bool:
-    from closedform.derivation.driven.writing import Writing
-
     labels = {label.text for label in Writing(model).inputs}
     return jet_of(name)[0] in {jet_of(label)[0] for label in labels}

@@ -1,0 +1,235 @@
+"""The steps that say what the solution does: resonance, stability, the steady state."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+
+from closedform.algebra.field import Scalar
+from closedform.algebra.hurwitz import HurwitzTest
+from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.sign_argument import SignArgument
+from closedform.derivation.driven.writing import Writing
+from closedform.derivation.parametric.formulas import sign_statement
+from closedform.derivation.parametric.reasons import reason_of
+from closedform.derivation.step import Side, Statement, Step, Symbol
+from closedform.notation.expression import ZERO, Expression, Sum, power_of, product
+from closedform.notation.terms import negated, sum_of
+from closedform.response.driven.phasor import Phasor, Sinusoid
+from closedform.response.driven.resonance import Resonance
+from closedform.response.driven.response import DrivenSolution
+
+__all__ = ["resonance_step", "stability_step", "steady_step", "transient_step"]
+
+
+def resonance_step(
+    writing: Writing, solution: DrivenSolution, facts: dict[str, object]
+) -> Step | None:
+    """Name the eigenvalues that an input shares with A; None where there are none."""
+    if not solution.resonances:
+        return None
+    rows = [
+        {
+            "input": writing.inputs[found.input],
+            "place": found.input,
+            "value": Statement("shared tone", (_value(writing, found),)),
+            "multiplicity": found.multiplicity,
+            "order": found.order,
+            "raised": found.raised,
+            "damped": found.damped,
+            "pair": bool(found.tone.frequency),
+        }
+        for found in solution.resonances
+    ]
+    return Step("resonance", (), {**facts, "rows": rows}, ("input_system",), "summary")
+
+
+def _value(writing: Writing, found: Resonance) -> Side:
+    rate = writing.element(found.tone.rate)
+    if not found.tone.frequency:
+        return rate
+    return Symbol("pair", parts=(rate, writing.element(found.tone.frequency)))
+
+
+def stability_step(writing: Writing, solution: DrivenSolution, facts: dict[str, object]) -> Step:
+    """Say whether the free motion decays, and why."""
+    stability = solution.stability
+    whole = product(
+        power_of(_polynomial(writing, test.polynomial), test.multiplicity)
+        for test in stability.factors
+    )
+    statement = Statement(
+        "polynomial of A", (Symbol("determinant", argument=writing.root, letter="A"), whole)
+    )
+    told = {
+        **facts,
+        "verdict": stability.verdict,
+        "rows": [_test_row(writing, test) for test in stability.reasons],
+        "second": all(len(test.polynomial) <= 3 for test in stability.factors),
+        "marginal": stability.marginal,
+    }
+    return Step("stability", (statement,), told, ("driven_solution",))
+
+
+def _polynomial(writing: Writing, coefficients: Sequence[Scalar]) -> Expression:
+    degree = len(coefficients) - 1
+    terms = [
+        writing.term(c, [power_of(writing.root, degree - k)])
+        for k, c in enumerate(coefficients)
+        if c
+    ]
+    return Sum(tuple(terms)) if len(terms) > 1 else sum_of(terms)
+
+
+def _test_row(writing: Writing, test: HurwitzTest) -> dict[str, object]:
+    determinants = [
+        {
+            "order": k,
+            "polynomial": Statement("factor of A", (_polynomial(writing, test.polynomial), ZERO)),
+            "statement": Statement(
+                "Hurwitz determinant",
+                (
+                    Symbol("scalar", (str(k),), None, "D"),
+                    writing.element(argument.element),
+                ),
+            ),
+            "why": _why(writing, argument),
+        }
+        for k, argument in test.determinants
+    ]
+    return {
+        "degree": len(test.polynomial) - 1,
+        "polynomial": Statement("factor of A", (_polynomial(writing, test.polynomial), ZERO)),
+        "manner": test.manner,
+        "signs": [_why(writing, a) for a in test.coefficients if _worth(writing, a)],
+        "determinants": determinants,
+        "structure": test.structure is not None,
+    }
+
+
+def _worth(writing: Writing, argument: SignArgument) -> bool:
+    """Whether a sign is not plain to see: more than a product of positive numbers and names."""
+    field = writing.model.field
+    if not isinstance(field, ParameterField) or argument.values != {1}:
+        return False
+    return len(argument.element.numer) > 1
+
+
+def _why(writing: Writing, argument: SignArgument) -> list[Side | Statement | str]:
+    field = writing.model.field
+    if not isinstance(field, ParameterField):
+        relation = {1: ">", 0: "=", -1: "<"}[min(argument.values)]
+        return [Statement("sign", (writing.element(argument.element), ZERO), relation)]
+    if argument.sign == "unknown":
+        return []
+    found = reason_of(field, argument)
+    return found or [sign_statement(field, argument.element, argument.sign)]
+
+
+def steady_step(
+    writing: Writing, solution: DrivenSolution, facts: dict[str, object]
+) -> Step | None:
+    """State the steady state, and by amplitude and phase where it oscillates."""
+    steady = solution.steady_state
+    if steady is None or not steady.steady:
+        return None
+    rows = []
+    for place, name in enumerate(writing.model.rows):
+        phasor = solution.phasors[place]
+        rows.append(
+            {
+                "row": place,
+                "kind": steady.kinds[place],
+                "steady": Statement(
+                    "steady",
+                    (
+                        Symbol("scalar", ("steady",), writing.t, name),
+                        steady.steady_formulas[place],
+                    ),
+                ),
+                "phasor": None if phasor is None else _phasor(writing, name, phasor, place),
+            }
+        )
+    several = len(solution.functions.intervals) > 1
+    last = len(solution.functions.intervals) - 1
+    told = {
+        **facts,
+        "rows": rows,
+        "when": writing.within(last) if several else None,
+        "constant": all(row["kind"] in ("constant", "zero") for row in rows),
+        "growing": any(row["kind"] == "growing" for row in rows),
+    }
+    return Step("steady", (), told, ("stability",), "summary")
+
+
+def transient_step(
+    writing: Writing, solution: DrivenSolution, facts: dict[str, object]
+) -> Step | None:
+    """State what decays; None where nothing is left of it, or no steady state is named."""
+    steady = solution.steady_state
+    if steady is None or not steady.steady or not steady.transient:
+        return None
+    statements = tuple(
+        Statement("transient", (Symbol("scalar", ("transient",), writing.t, name), formula))
+        for name, formula in zip(writing.model.rows, steady.transient_formulas, strict=True)
+    )
+    return Step("transient", statements, facts, ("steady",), "full")
+
+
+def _phasor(writing: Writing, name: str, phasor: Phasor, row: int) -> dict[str, object]:
+    """Amplitude · cos(w t - phase) for each sinusoid, and what each phase is."""
+    parts: list[Side] = [] if phasor.mean_formula == ZERO else [phasor.mean_formula]
+    phases = []
+    for k, sinusoid in enumerate(phasor.sinusoids):
+        symbol = _phase_symbol(row, k, len(phasor.sinusoids))
+        argument = _argument(writing, sinusoid)
+        parts.append(Symbol("sinusoid", parts=(sinusoid.amplitude, argument, symbol)))
+        phases.append(_phase(sinusoid, symbol))
+    side = parts[0] if len(parts) == 1 else Symbol("sum", parts=tuple(parts))
+    symbol = Symbol("scalar", ("steady",), writing.t, name)
+    return {
+        "statement": Statement("by amplitude", (symbol, side)),
+        "phases": phases,
+        "gains": list(_gains(writing, phasor)),
+    }
+
+
+def _phase_symbol(row: int, k: int, count: int) -> Symbol:
+    index = str(row + 1) if count == 1 else f"{row + 1},{k + 1}"
+    return Symbol("scalar", (index,), None, "varphi")
+
+
+def _argument(writing: Writing, sinusoid: Sinusoid) -> Expression:
+    t: Expression = writing.t
+    if sinusoid.origin:
+        t = sum_of([t, negated(writing.element(sinusoid.origin))])
+    return writing.term(sinusoid.frequency, [t])
+
+
+def _phase(sinusoid: Sinusoid, symbol: Symbol) -> dict[str, object]:
+    """The phase by its arc tangent and its quadrant; else by its cosine and sine."""
+    angle = sinusoid.phase
+    value: Side = Symbol("angle of", parts=(angle.above, angle.beside))
+    if angle.arc is not None:
+        turn, direction, ratio = angle.arc
+        pi = Symbol("turn", (str(turn.numerator), str(turn.denominator)))
+        if direction == 0:
+            value = pi
+        else:
+            sign = "+" if direction > 0 else "-"
+            value = Symbol("arc", (sign,), parts=(pi, ratio) if turn else (ratio,))
+    return {
+        "statement": Statement("phase", (symbol, value)),
+        "place": angle.place,
+        "arc": angle.arc is not None and angle.arc[1] != 0,
+        "sinusoid": sinusoid,
+    }
+
+
+def _gains(writing: Writing, phasor: Phasor) -> Iterator[dict[str, object]]:
+    for sinusoid in phasor.sinusoids:
+        if sinusoid.lag is not None:
+            yield {
+                "input": writing.inputs[sinusoid.lag.input],
+                "gain": sinusoid.lag.gain,
+                "sinusoid": sinusoid,
+            }
