@@ -10,11 +10,11 @@ det(sI - A), the balances have no other solutions.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
 from closedform.algebra.domain import Comparison
 from closedform.algebra.field import FieldMatrix, Scalar
-from closedform.model.driven.model import Balance, Jet
+from closedform.model.driven.model import Jet
 from closedform.verification.driven.identities import Residual, identity_check
 from closedform.verification.driven.setting import Setting
 from closedform.verification.parametric.conditions import follows
@@ -65,7 +65,13 @@ class _Expressed:
         below = self.jet(Jet(jet.name, jet.order - 1)) if jet.order else None
         if below is None:
             return None
-        states, inputs = below
+        return self.derivative(*below)
+
+    def derivative(
+        self, states: FieldMatrix, inputs: Sequence[FieldMatrix]
+    ) -> tuple[FieldMatrix, list[FieldMatrix]]:
+        """Return the derivative of what such rows stand for."""
+        m = len(self.setting.model.inputs)
         derived = [self.field.zeros(1, m), *inputs] if m else []
         if self.b is not None:
             derived[0] = states * self.b
@@ -78,10 +84,10 @@ class _Expressed:
 def _substituted_check(setting: Setting) -> Check:
     expressed = _Expressed(setting)
     residuals: list[Residual] = []
-    for number, balance in enumerate(setting.model.balances, start=1):
-        found = _left_of(setting, expressed, balance)
+    for told, of_unknowns, of_inputs in _identities(setting):
+        found = _left_of(setting, expressed, of_unknowns, of_inputs)
         if isinstance(found, str):
-            return Check(_SUBSTITUTED, "refuted", f"equation {number}: {found}")
+            return Check(_SUBSTITUTED, "refuted", f"{told}: {found}")
         for k in range(setting.last + 1) if found else ():
             total = setting.nothing(1)
             for place, given in enumerate(setting.inputs[k]):
@@ -89,35 +95,60 @@ def _substituted_check(setting: Setting) -> Check:
                 for row in found:
                     total = total + derived.scaled(row.to_list()[0][place])
                     derived = derived.derivative()
-            residuals.append(Residual(f"equation {number}", k, total))
+            residuals.append(Residual(told, k, total))
     return identity_check(
         setting,
         _SUBSTITUTED,
         residuals,
-        "x' = A x + B u and what was eliminated were put into each equation: the coefficient of "
-        "every state and of every input is zero",
+        "x' = A x + B u and what was eliminated were put into each equation, and into what says "
+        "that a state is the derivative of another: the coefficient of every state and of every "
+        "input is zero",
     )
 
 
-def _left_of(setting: Setting, expressed: _Expressed, balance: Balance) -> list[FieldMatrix] | str:
-    """What is left of a balance: rows over the inputs and their derivatives, none if all zero.
+Row = tuple[Jet, int, Scalar]
+"""A jet, how often it is differentiated, and its weight."""
+
+
+def _identities(
+    setting: Setting,
+) -> Iterator[tuple[str, Sequence[Row], Sequence[tuple[int, Scalar]]]]:
+    """The balances, and that a jet which is a state is the derivative of the one below."""
+    one = setting.field.domain.one
+    for number, balance in enumerate(setting.model.balances, start=1):
+        weights = [(jet, 0, setting.put(w)) for jet, w in balance.of_unknowns]
+        yield f"equation {number}", weights, balance.of_inputs
+    for jet in setting.model.reduction.jets:
+        if jet.order and setting.row_of(Jet(jet.name, jet.order - 1)) is not None:
+            below = Jet(jet.name, jet.order - 1)
+            yield f"{below.text} and {jet.text}", [(jet, 0, one), (below, 1, -one)], ()
+
+
+def _left_of(
+    setting: Setting,
+    expressed: _Expressed,
+    of_unknowns: Sequence[Row],
+    of_inputs: Sequence[tuple[int, Scalar]],
+) -> list[FieldMatrix] | str:
+    """What is left of an identity: rows over the inputs and their derivatives, none if all zero.
 
     Words where a state is left, or a jet is not expressed.
     """
     field, m = setting.field, len(setting.model.inputs)
     states = field.zeros(1, setting.states)
     inputs = [field.zeros(1, m)] if m else []
-    for jet, weight in balance.of_unknowns:
+    for jet, times, weight in of_unknowns:
         found = expressed.jet(jet)
+        for _ in range(times):
+            found = None if found is None else expressed.derivative(*found)
         if found is None:
             return f"{jet.text} was not solved for"
-        own = setting.put(weight)
-        states = states + found[0] * own
+        states = states + found[0] * weight
         for order, row in enumerate(found[1]):
             if order == len(inputs):
                 inputs.append(field.zeros(1, m))
-            inputs[order] = inputs[order] + row * own
-    for place, weight in balance.of_inputs:
+            inputs[order] = inputs[order] + row * weight
+    for place, weight in of_inputs:
         unit = [[setting.put(weight) if j == place else field.domain.zero for j in range(m)]]
         inputs[0] = inputs[0] + field.matrix(unit)
     for name, element in zip(setting.model.names, states.to_list()[0], strict=True):

@@ -37,7 +37,7 @@ from closedform.verification.parametric.verify import verify_cases
 from closedform.verification.record import Check, VerificationRecord
 from closedform.verification.verify import verify
 
-__all__ = ["driven_checks", "verify_driven"]
+__all__ = ["driven_checks", "exact_checks", "verify_driven"]
 
 
 def verify_driven(response: DrivenResponse) -> VerificationRecord | CaseRecords:
@@ -69,7 +69,7 @@ def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterato
     )
     yield from typed_check(setting)
     yield from reduction_checks(setting)
-    yield from _exact_checks(setting)
+    yield from exact_checks(setting)
     yield stability_check(setting)
     yield from steady_checks(setting)
     yield from phasor_checks(setting)
@@ -78,14 +78,15 @@ def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterato
         yield defined_check(response.stacked, setting)
     for single, functions, written in period_settings(response, solution):
         places = [k for k, r in enumerate(repeats) if r == functions.repeat]
-        own = (*declared_check(single, places, single.last), *_exact_checks(single))
+        own = (*declared_check(single, places, single.last), *exact_checks(single))
         for check in own:
             yield replace(check, item=f"one period: {check.item}")
         yield blow_check(single, functions)
         yield period_formula_check(single, written)
 
 
-def _exact_checks(setting: Setting) -> Iterator[Check]:
+def exact_checks(setting: Setting) -> Iterator[Check]:
+    """Yield the checks of the exact functions, and of the state form that they solve."""
     yield intervals_check(setting)
     if setting.model.balances:
         yield balance_check(setting)
