@@ -10,6 +10,7 @@ from hypothesis import strategies as st
 
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import Scalar
+from closedform.algebra.parametric_spectrum import vanishes_under
 from closedform.algebra.waves import Constant, Wave
 from closedform.model.driven.model import DrivenModel
 from closedform.model.driven.signal import Burst, Signal
@@ -83,7 +84,7 @@ def solves_the_equations(solution: DrivenSolution) -> bool:
             )
             if solution.sign_of(moved.rate).values <= {0, 1}:
                 _added([moved], -put(b[i][place]), left)
-        if any(left.values()):
+        if not all(vanishes_under(e, solution.drive.relation) for e in left.values()):
             return False
     return True
 
@@ -278,6 +279,13 @@ PARAMETRIC = {
         lambda e: [steady(e, "q")],
         initial=["v", 0],
         parameters={"a": "positive", "b": "positive", "q": "real", "v": "real"},
+    ),
+    "equation that is kept": parametric(
+        [["-a^2-b^2", 0], [1, "-c^2"]],
+        [[1], [0]],
+        lambda e: [steady(e, "F")],
+        initial=[1, 0],
+        parameters=dict.fromkeys(("a", "b", "c", "F"), "positive"),
     ),
     "decaying input": parametric(
         [["-1/tau"]],
