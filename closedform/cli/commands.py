@@ -21,7 +21,8 @@ from closedform.errors import ClosedformError
 __all__ = ["app", "main"]
 
 app = typer.Typer(
-    help="Exact, proved closed-form responses of linear models x' = A x, written up as LaTeX.",
+    help="Exact, proved closed-form responses of linear models, free or driven by inputs, "
+    "written up as LaTeX.",
     epilog="Exit status: 0 all well, 1 a result was refuted, 2 an input is not usable or too "
     "extreme to be proved, 3 something outside is missing, such as a TeX engine.",
     no_args_is_help=True,
