@@ -150,11 +150,13 @@ def respond(
     *,
     further: Callable[[ExponentialMatrix], ExponentialMatrix] | None = None,
     parted: Callable[[ExponentialMatrix], ExponentialMatrix | None] | None = None,
+    field: BaseField | None = None,
 ) -> Response:
     """Return the exact response of a model: e^(At), x(t) and the outputs.
 
     `further` makes other functions of e^(At), to be written with the same names, `parted`
-    some to be written mode by mode.
+    some to be written mode by mode.  `field` is one that holds all numbers of the model, the
+    smallest such if it is not given.
 
     Shapes:  n states give an n x n transition matrix and n formulas of the solution.
     Units:   those of the model; time in the unit of the rates' inverse.
@@ -166,11 +168,12 @@ def respond(
     x1(t) = cos(2*t)
     x2(t) = -2*sin(2*t)
     """
-    field = base_field(
-        number
-        for row in (*model.matrix, model.initial, *(o.weights for o in model.outputs))
-        for number in row
-    )
+    if field is None:
+        field = base_field(
+            number
+            for row in (*model.matrix, model.initial, *(o.weights for o in model.outputs))
+            for number in row
+        )
     matrix = field.matrix([[field.scalar(entry) for entry in row] for row in model.matrix])
     initial = field.matrix([[field.scalar(entry)] for entry in model.initial])
     spectrum = spectrum_of(field, matrix)
@@ -243,7 +246,7 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     if response.parted is not None:
         rows, columns = map(range, response.parted.shape)
         by_mode = tuple(
-            tuple(_by_mode(parts(response.parted, i, k), model.time) for k in columns) for i in rows
+            tuple(_by_mode(parts(response.parted, i, k)) for k in columns) for i in rows
         )
     needs_impulses = not all(factor.has_short_roots for factor in factors)
     impulses = tuple(
@@ -263,14 +266,14 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     )
 
 
-def _by_mode(contributions: Sequence[Contribution], time: str) -> tuple[ModePart, ...]:
+def _by_mode(contributions: Sequence[Contribution]) -> tuple[ModePart, ...]:
     return tuple(
         ModePart(
             _number_formula(c.mode.rate),
             c.mode.kind,
             None if c.mode.frequency is None else _number_formula(c.mode.frequency),
             len(c.amounts) - 1,
-            closed_form([c], time),
+            c,
         )
         for c in contributions
     )

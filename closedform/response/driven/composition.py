@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import replace
 
 from closedform.algebra.field import BaseField, Scalar
@@ -29,6 +29,7 @@ __all__ = [
     "constant_formula",
     "element_formula",
     "interval_formula",
+    "put_in_place",
     "renamed",
     "scaled",
     "shifted",
@@ -63,21 +64,26 @@ def shifted(formula: Expression, time: str, origin: Expression) -> Expression:
     """
     if origin == ZERO:
         return formula
-    return _put(formula, time, sum_of([Name(time), negated(origin)]), origin)
+    return _put(formula, {time: sum_of([Name(time), negated(origin)])}, (time, origin))
 
 
 def renamed(formula: Expression, old: str, new: str) -> Expression:
     """Return a formula with one name in the place of another."""
-    return _put(formula, old, Name(new), None)
+    return _put(formula, {old: Name(new)}, None)
+
+
+def put_in_place(formula: Expression, given: Mapping[str, Expression]) -> Expression:
+    """Return a formula with formulas in the place of names, all at once."""
+    return _put(formula, given, None)
 
 
 def _put(
-    formula: Expression, name: str, value: Expression, origin: Expression | None
+    formula: Expression, given: Mapping[str, Expression], origin: tuple[str, Expression] | None
 ) -> Expression:
     def put(node: Expression) -> Expression:
         match node:
             case Name(text):
-                return value if text == name else node
+                return given.get(text, node)
             case Number():
                 return node
             case Negation(operand):
@@ -85,7 +91,7 @@ def _put(
             case Sum(terms):
                 return sum_of([put(term) for term in terms])
             case Product(factors):
-                turned = None if origin is None else _turned(node, name, origin)
+                turned = None if origin is None else _turned(node, *origin)
                 return turned or product(put(f) for f in factors)
             case Quotient(above, below):
                 return Quotient(put(above), put(below))

@@ -2,32 +2,35 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Iterator
+from dataclasses import dataclass, replace
 
+from closedform.algebra.field import Scalar
 from closedform.errors import InputError
 from closedform.model.driven.model import DrivenModel
-from closedform.notation.expression import (
-    ONE,
-    ZERO,
-    Call,
-    Expression,
-    Name,
-    Quotient,
-    number,
-    product,
-)
+from closedform.notation.expression import ZERO, Expression
 from closedform.notation.plain import plain
-from closedform.notation.terms import negated, opened, sum_of
+from closedform.notation.terms import opened, sum_of
 from closedform.response.by_mode import ByMode, ModePart
 from closedform.response.driven.composition import (
     constant_formula,
     element_formula,
     renamed,
-    scaled,
-    shifted,
     summed,
 )
+from closedform.response.driven.period_amounts import writing_of
+from closedform.response.driven.period_guards import Guards
+from closedform.response.driven.period_sums import PeriodSums
 from closedform.response.driven.periodic import Blow, PeriodFunctions
+from closedform.response.driven.stability import Stability
+from closedform.response.driven.strokes import (
+    ENDLESS,
+    ONCE,
+    Count,
+    Struck,
+    UnwrittenSumError,
+)
+from closedform.response.parametric.case import Case
 
 __all__ = ["PeriodStretch", "PeriodicSolution", "RepeatedModeError", "periodic_solution"]
 
@@ -35,7 +38,7 @@ Rows = tuple[tuple[Expression, ...], ...]
 
 
 class RepeatedModeError(InputError):
-    """A repeated mode whose sum over periods is not written."""
+    """A repeated pair whose sum over periods is not written."""
 
     def __init__(self, model: str, mode: str) -> None:
         super().__init__(model, mode)
@@ -43,9 +46,9 @@ class RepeatedModeError(InputError):
 
     def __str__(self) -> str:
         return (
-            f"{self.model}: an input repeats, and the mode {self.mode} of the model is repeated "
-            "too; sums over periods are written for simple modes, for t e^(rate t) and for "
-            "straight lines. State a finite number of periods as pieces of the input."
+            f"{self.model}: an input repeats, and the pair {self.mode} of eigenvalues is repeated "
+            "too; sums over periods are written for simple pairs and for real eigenvalues. State "
+            "a number of periods as pieces of the input."
         )
 
 
@@ -67,9 +70,15 @@ class PeriodicSolution:
 
     The n-th period, n = 1, 2, … up to `count`, begins at start + (n - 1) period; `number` and
     `local` are the names of n and of the local time.  `stretches` hold in the n-th period,
-    `after` for the time t once all periods are over (None if they go on), `steady` is what
-    `stretches` tend to where all modes decay, None elsewhere.  Every formula in `provided`
-    is a divisor that must not vanish.
+    `after` for the time t once all periods are over (None if they go on).  `left` are the
+    states at the end of one period by itself, which began at rest: what strikes at its start
+    is in it, what strikes at the next one's start is not; `carried` are these after n periods.
+
+    `steady` is what `stretches` tend to, and `begins` what `carried` tends to,
+    (I - e^(AT))^(-1) `left`: where all modes decay and the periods go on, None elsewhere.
+    Every formula in `provided` is a divisor: where one vanishes, a pair of eigenvalues ± i w
+    has a whole number of turns in a period, and there is resonance.  `meets` are the
+    frequencies of pairs of which that is so throughout.
     """
 
     period: Expression
@@ -81,6 +90,10 @@ class PeriodicSolution:
     after: tuple[Expression, ...] | None
     steady: tuple[PeriodStretch, ...] | None
     provided: tuple[Expression, ...]
+    left: tuple[Expression, ...] = ()
+    carried: tuple[Expression, ...] = ()
+    begins: tuple[Expression, ...] | None = None
+    meets: tuple[Expression, ...] = ()
 
 
 def periodic_solution(
@@ -89,215 +102,184 @@ def periodic_solution(
     columns: Rows,
     by_mode: ByMode,
     *,
-    decays: bool,
+    stability: Stability,
+    case: Case | None,
 ) -> PeriodicSolution:
-    """Return the formulas of the response to repeating inputs.
+    """Return the formulas of the response to repeating inputs, in one case of its parameters.
 
-    `columns` are those of `functions.single`, `by_mode` of `functions.parted`.  `decays` says
-    that every mode of the model is known to decay.
+    `columns` are those of `functions.single`, `by_mode` of `functions.parted`; `case` is None
+    without parameters.
 
-    Raises:  RepeatedModeError.
+    Raises:  RepeatedModeError; VanishingRateError where a real rate may be 0.
     """
-    writer = _Writer(model, functions, columns, by_mode)
-    repeat = functions.repeat
-    count = repeat.count
-    return PeriodicSolution(
-        period=writer.period,
-        start=writer.start,
-        count=count,
-        number=writer.number,
-        local=writer.local,
-        stretches=writer.stretches(steady=False),
-        after=None if count is None else writer.after(count),
-        steady=writer.stretches(steady=True) if decays and count is None else None,
-        provided=writer.provided(),
-    )
+    writer = _Writer(model, functions, columns, by_mode, stability, case)
+    writer.guards.require_rates()
+    count = functions.repeat.count
+    lasting = stability.verdict == "stable" and count is None
+    number = Count(writer.number)
+    try:
+        return PeriodicSolution(
+            period=writer.period,
+            start=writer.start,
+            count=count,
+            number=writer.number,
+            local=writer.local,
+            stretches=writer.stretches(number),
+            after=None if count is None else writer.after(count),
+            steady=writer.stretches(ENDLESS) if lasting else None,
+            provided=writer.provided(),
+            left=writer.at_end(ONCE),
+            carried=writer.at_end(number),
+            begins=writer.at_end(ENDLESS) if lasting else None,
+            meets=writer.meets(),
+        )
+    except UnwrittenSumError as error:
+        raise RepeatedModeError(model.name, _mode(error.part)) from error
 
 
 class _Writer:
     """The formulas of one response, by what they are made of."""
 
     def __init__(
-        self, model: DrivenModel, functions: PeriodFunctions, columns: Rows, by_mode: ByMode
+        self,
+        model: DrivenModel,
+        functions: PeriodFunctions,
+        columns: Rows,
+        by_mode: ByMode,
+        stability: Stability,
+        case: Case | None,
     ) -> None:
         self.model, self.functions = model, functions
         self.columns, self.by_mode = columns, by_mode
         field = self.field = model.field
-        self.time = model.time
-        taken = _taken(model)
+        taken = _taken(model, case)
         self.number = next(n for n in ("n", "n_p", "n_period") if n not in taken)
         self.local = next(n for n in ("tau", "t_n", "t_local") if n not in taken)
         single = functions.single.intervals
-        self.start = element_formula(field, single[0].start)
-        self.length = single[-1].start - single[0].start
+        self.first = single[0].start
+        self.length = single[-1].start - self.first
+        self.start = element_formula(field, self.first)
         self.period = element_formula(field, self.length)
+        self.guards = Guards(model, case, stability, self.length)
+        self.parts = tuple(part for row in by_mode for entry in row for part in entry)
+        writing = writing_of(field, self.parts, self.number)
+        self.sums = PeriodSums(field, writing, self.length, self.number)
 
-    def stretches(self, *, steady: bool) -> tuple[PeriodStretch, ...]:
+    def stretches(self, count: Count) -> tuple[PeriodStretch, ...]:
         """The formulas in each part of a period, in local time."""
-        single = self.functions.single
-        inside = single.intervals[:-1]  # the last one is after the period
+        single = self.functions.single.intervals
         found = []
-        for k, interval in enumerate(inside):
-            end = single.intervals[k + 1].start
-            rows = tuple(self._row(row, k, steady=steady) for row in range(len(self.columns)))
-            first = single.intervals[0].start
-            found.append(
-                PeriodStretch(
-                    element_formula(self.field, interval.start - first),
-                    element_formula(self.field, end - first),
-                    rows,
-                )
+        for k, interval in enumerate(single[:-1]):  # the last one is after the period
+            rows = tuple(self._row(row, k, count) for row in range(len(self.columns)))
+            start, end = (
+                element_formula(self.field, at - self.first)
+                for at in (interval.start, single[k + 1].start)
             )
+            found.append(PeriodStretch(start, end, rows))
         return tuple(found)
 
-    def _row(self, row: int, k: int, *, steady: bool) -> Expression:
-        held = self.functions.single.sustained[k].summands
-        current = summed(self.field, self.columns, row, held, self.time)
-        terms = [self._in_local_time(current)]
-        n: Expression = Name(self.number)
-        before = sum_of([n, negated(ONE)])
-        for blow in self.functions.blows:
-            for part in self.by_mode[row][blow.place]:
-                here, so_far = self._at(part, blow, k, n, before)
-                total = self._series(here, part, None if steady else so_far)
-                constant = constant_formula(self.field, blow.constant)
-                terms.append(total if constant is None else scaled(constant, total))
-        kept = [term for term in terms if term != ZERO]
+    def _row(self, row: int, k: int, count: Count) -> Expression:
+        held = [
+            replace(summand, origin=summand.origin - self.first)
+            for summand in self.functions.single.sustained[k].summands
+        ]
+        own = renamed(
+            summed(self.field, self.columns, row, held, self.model.time),
+            self.model.time,
+            self.local,
+        )
+        free = self.sums.total(list(self._struck(row, k, count)), self.local)
+        kept = [term for term in (own, free) if term != ZERO]
         return opened(sum_of(kept)) if kept else ZERO
 
-    def _at(
-        self, part: ModePart, blow: Blow, k: int, n: Expression, before: Expression
-    ) -> tuple[Expression, Expression]:
-        """The part in local time since the blow's last stroke, and the number of strokes."""
-        since = element_formula(self.field, blow.at - self.functions.single.intervals[0].start)
-        moved = shifted(renamed(part.formula, self.time, self.local), self.local, since)
-        if blow.step <= k:
-            return moved, n
-        return shifted(moved, self.local, negated(self.period)), before
+    def _struck(self, row: int, k: int, count: Count) -> Iterator[Struck]:
+        """What every blow adds in a period: those to come have struck once less.
+
+        A blow at the end strikes at the start of the next period: it has struck as often as
+        those at the start, but for the very first start.
+        """
+        earlier = count if count.endless else replace(count, less=count.less + 1)
+        last = len(self.functions.single.intervals) - 1
+        for blow, part in self._blows(row):
+            since = self.first - blow.at
+            if blow.step <= k:
+                yield self._of(blow, part, since, count)
+            elif blow.step < last:
+                yield self._of(blow, part, since + self.length, earlier)
+            else:
+                yield self._of(blow, part, since + self.length, count)
+                if not count.endless:
+                    gone = self.sums.writing.scaled(part, -1)
+                    first = self._of(blow, gone, since, ONCE)
+                    yield replace(first, counted=True)
+
+    def at_end(self, count: Count) -> tuple[Expression, ...]:
+        """The states at the end of a period, all blows of it included."""
+        return tuple(
+            self.sums.total(
+                [
+                    self._of(blow, part, self.first + self.length - blow.at, count)
+                    for blow, part in self._blows(row)
+                ],
+                None,
+            )
+            for row in range(len(self.model.names))
+        )
 
     def after(self, count: int) -> tuple[Expression, ...]:
         """The formulas once all periods are over, in the model's time."""
-        found = []
-        for row in range(len(self.columns)):
-            terms = []
-            for blow in self.functions.blows:
-                last = blow.at + self.length * (count - 1)
-                for part in self.by_mode[row][blow.place]:
-                    moved = shifted(part.formula, self.time, element_formula(self.field, last))
-                    total = self._series(moved, part, number(count), self.time)
-                    constant = constant_formula(self.field, blow.constant)
-                    terms.append(total if constant is None else scaled(constant, total))
-            kept = [term for term in terms if term != ZERO]
-            found.append(opened(sum_of(kept)) if kept else ZERO)
-        return tuple(found)
-
-    def _series(
-        self,
-        f: Expression,
-        part: ModePart,
-        n: Expression | None,
-        variable: str | None = None,
-    ) -> Expression:
-        """The sum of f(theta + k T) for k = 0 … n-1, or for all k where n is None."""
-        name = variable or self.local
-        if f == ZERO:
-            return ZERO
-        if part.rate == ZERO and part.kind == "real":
-            return self._line(f, part, n, name)
-        whole = self._divisor(part)
-        if part.kind == "real" and part.power == 0:
-            if n is None:
-                return _over(f, whole)
-            left = sum_of([ONE, negated(Call("exp", self._grown(part.rate, n)))])
-            return _over(scaled(left, f), whole)
-        if part.power > (1 if part.kind == "real" else 0):
-            raise RepeatedModeError(self.model.name, self._mode(part))
-        twice = self._exponential(part, 2)
-        earlier = shifted(f, name, self.period)
-        head = sum_of([f, negated(_scaled_by(twice, earlier))])
-        if n is None:
-            return _over(head, whole)
-        end = self._later(f, n, name)
-        one_less = self._later(f, sum_of([n, negated(ONE)]), name)
-        tail = sum_of([negated(end), _scaled_by(twice, one_less)])
-        return _over(sum_of([head, tail]), whole)
-
-    def _line(self, f: Expression, part: ModePart, n: Expression | None, name: str) -> Expression:
-        if n is None or part.power > 1:
-            raise RepeatedModeError(self.model.name, "0")
-        if part.power == 0:
-            return scaled(n, f)
-        last = self._later(f, sum_of([n, negated(ONE)]), name)
-        return Quotient(scaled(n, sum_of([f, last])), number(2))
-
-    def _later(self, f: Expression, periods: Expression, name: str) -> Expression:
-        return shifted(f, name, negated(product((periods, self.period))))
-
-    def _divisor(self, part: ModePart) -> Expression:
-        once = self._exponential(part, 1)
-        if part.kind == "real":
-            simple = sum_of([ONE, negated(once if once is not None else ONE)])
-            return simple if part.power == 0 else product((simple, simple))
-        if part.frequency is None:
-            raise ValueError("a pair has a frequency")
-        kernel = Call(
-            "cos" if part.kind == "circular" else "cosh", product((part.frequency, self.period))
+        begun = self.length * (count - 1)
+        return tuple(
+            self.sums.total(
+                [
+                    self._of(blow, part, -(blow.at + begun), Count(fixed=count))
+                    for blow, part in self._blows(row)
+                ],
+                self.model.time,
+            )
+            for row in range(len(self.columns))
         )
-        if once is None:  # 1 - 2 cos + 1
-            return product((number(2), sum_of([ONE, negated(kernel)])))
-        twice = self._exponential(part, 2)
-        if twice is None:
-            raise ValueError("a square of an exponential is one")
-        return sum_of([ONE, negated(product((number(2), once, kernel))), twice])
 
-    def _exponential(self, part: ModePart, times: int) -> Expression | None:
-        """e^(times · rate · T), None for 1."""
-        if part.rate == ZERO:
-            return None
-        return Call("exp", self._grown(part.rate, number(times)))
+    def _blows(self, row: int) -> Iterator[tuple[Blow, ModePart]]:
+        """The parts of a row: those of one mode follow one another."""
+        found = [
+            (blow, part) for blow in self.functions.blows for part in self.by_mode[row][blow.place]
+        ]
+        modes = list(dict.fromkeys((part.rate, part.frequency) for _, part in found))
+        yield from sorted(found, key=lambda pair: modes.index((pair[1].rate, pair[1].frequency)))
 
-    def _grown(self, rate: Expression, times: Expression) -> Expression:
-        if rate == ZERO:
-            return ZERO
-        sign = rate != opened(rate) or plain(rate).startswith("-")
-        inner = negated(rate) if sign else rate
-        moved = scaled(product((times, self.period)), inner)
-        return negated(moved) if sign else moved
-
-    def _mode(self, part: ModePart) -> str:
-        if part.frequency is None:
-            return plain(part.rate)
-        return f"{plain(part.rate)} ± {plain(part.frequency)} i"
+    def _of(self, blow: Blow, part: ModePart, shift: Scalar, count: Count) -> Struck:
+        constant = constant_formula(self.field, blow.constant)
+        return Struck(part, constant, shift, count, self.guards.meeting(part) == "always")
 
     def provided(self) -> tuple[Expression, ...]:
-        """Divisors that an undamped pair brings: they vanish where it meets the period."""
-        found = [
-            self._divisor(part)
-            for row in self.by_mode
-            for entry in row
-            for part in entry
-            if part.kind == "circular" and part.rate == ZERO
-        ]
+        """Divisors of pairs that may meet the period."""
+        found = [self.sums.divisor(p) for p in self.parts if self.guards.may_vanish(p)]
         return tuple(dict.fromkeys(found))
 
-    def _in_local_time(self, formula: Expression) -> Expression:
-        """A formula in the time of the first period, in local time: t = start + local."""
-        local = renamed(formula, self.time, self.local)
-        return shifted(local, self.local, negated(self.start))
+    def meets(self) -> tuple[Expression, ...]:
+        """The frequencies that meet the period."""
+        found = [p.frequency for p in self.parts if self.guards.meeting(p) == "always"]
+        return tuple(dict.fromkeys(f for f in found if f is not None))
 
 
-def _taken(model: DrivenModel) -> set[str]:
-    """Every name of the model."""
+def _mode(part: ModePart) -> str:
+    if part.frequency is None:
+        return plain(part.rate)
+    imaginary = f"{plain(part.frequency)}*i"
+    return f"± {imaginary}" if part.rate == ZERO else f"{plain(part.rate)} ± {imaginary}"
+
+
+def _taken(model: DrivenModel, case: Case | None) -> set[str]:
+    """Every name of the model and of the case."""
     parameters = getattr(model.field, "parameters", ())
     inputs = (given.name for given in model.inputs)
-    return {model.time, *model.stacked.states, *model.rows, *parameters, *inputs}
-
-
-def _over(above: Expression, below: Expression) -> Expression:
-    if isinstance(above, Quotient):
-        return Quotient(above.numerator, product((above.denominator, below)))
-    return Quotient(above, below)
-
-
-def _scaled_by(factor: Expression | None, formula: Expression) -> Expression:
-    return formula if factor is None else scaled(factor, formula)
+    quantities = () if case is None else (q.name for q in case.quantities)
+    return {
+        model.time,
+        *model.stacked.states,
+        *model.rows,
+        *parameters,
+        *inputs,
+        *quantities,
+    }

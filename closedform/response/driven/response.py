@@ -153,7 +153,7 @@ def respond_driven(model: DrivenModel) -> DrivenResponse:
     def parted(_: ExponentialMatrix) -> ExponentialMatrix | None:
         return found[0].parted
 
-    response = respond(model.stacked, further=further, parted=parted)
+    response = respond(model.stacked, further=further, parted=parted, field=model.field)
     forms = response.closed_forms
     solution = _solution(model, found[0], forms.further, forms.by_mode, None)
     return DrivenResponse(model, response, (solution,))
@@ -243,7 +243,8 @@ def _solution(
                 functions,
                 tuple(row[first:last] for row in columns),
                 tuple(row[first_parted:last_parted] for row in by_mode),
-                decays=False,
+                stability=sought.stability,
+                case=case,
             )
         )
         first, first_parted = last, last_parted

@@ -8,14 +8,13 @@ from typing import Literal
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.notation.rational_formula import rational_formula
-from closedform.response.by_mode import ModePart
-from closedform.response.parametric.closed_form import closed_form
+from closedform.response.by_mode import ModePart, TermsOfMode
 from closedform.response.parametric.terms import Term
 
 __all__ = ["by_mode"]
 
 
-def by_mode(writing: ParameterField, function: Sequence[Term], time: str) -> tuple[ModePart, ...]:
+def by_mode(writing: ParameterField, function: Sequence[Term]) -> tuple[ModePart, ...]:
     """Return the parts of a function of the time that share a rate and a frequency."""
     parts: dict[tuple[Scalar, Scalar | None], list[Term]] = {}
     for term in function:
@@ -26,7 +25,7 @@ def by_mode(writing: ParameterField, function: Sequence[Term], time: str) -> tup
             _kind(terms[0]),
             None if frequency is None else rational_formula(writing, frequency),
             max(term.power for term in terms),
-            closed_form(writing, terms, time),
+            TermsOfMode(writing, tuple(terms)),
         )
         for (rate, frequency), terms in parts.items()
     )

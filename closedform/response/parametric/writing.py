@@ -141,9 +141,7 @@ def written_case(
         functions.further,
         _in_rows(formulas[n + m : written_whole], functions.further),
         functions.parted,
-        _in_rows(
-            [by_mode(writing, f, model.time) for f in results[written_whole:]], functions.parted
-        ),
+        _in_rows([by_mode(writing, f) for f in results[written_whole:]], functions.parted),
     )
 
 
