@@ -24,6 +24,7 @@ from tests.parametric.record_reader import DisagreementError
 from tests.response.driven.stated import blow, numeric, parametric, sine, steady
 from tests.response.driven.test_driven_response import MODELS
 from tests.response.driven.test_numbers import CASES, mount, pump
+from tests.response.driven.test_repeated_values import repeated
 
 Record = dict[str, Any]
 
@@ -54,9 +55,12 @@ def proofs(response: DrivenResponse) -> VerificationRecord | CaseRecords:
     return one
 
 
+REPEATED = {"for ever": repeated(None), "three times": repeated(3)}
+
+
 @cache
 def stored(name: str) -> Record:
-    response = respond_driven(MODELS[name] if name in MODELS else PARAMETRIC[name])
+    response = respond_driven((MODELS | PARAMETRIC | REPEATED)[name])
     numbers = [
         driven_numbers_at(
             response,
@@ -69,13 +73,13 @@ def stored(name: str) -> Record:
     return record
 
 
-@pytest.mark.parametrize("name", [*MODELS, *PARAMETRIC])
+@pytest.mark.parametrize("name", [*MODELS, *PARAMETRIC, *REPEATED])
 def test_a_record_is_as_the_schema_says_and_its_formulas_read_back(name: str) -> None:
     VALIDATOR.validate(stored(name))
     check_driven_texts(stored(name))
 
 
-@pytest.mark.parametrize("name", MODELS)
+@pytest.mark.parametrize("name", [*MODELS, *REPEATED])
 def test_the_solution_in_the_record_is_the_solution_of_what_is_stated_there(name: str) -> None:
     assert check_driven_record(stored(name)) == 1
 
@@ -113,6 +117,39 @@ def test_the_reader_finds_what_is_wrong(name: str, spoil: Callable[[Record], obj
     spoil(record)
     with pytest.raises(DisagreementError):
         check_driven_record(record)
+
+
+def stretch(record: Record, key: str, place: int, text: str) -> None:
+    """Put another formula into what inputs that repeat add."""
+    record["periodic"][0][key][place]["solution"][0] = text
+
+
+SPOILT_PERIODS: list[tuple[str, Callable[[Record], object]]] = [
+    ("for ever", lambda r: stretch(r, "stretches", 0, "0")),
+    ("for ever", lambda r: stretch(r, "stretches", 2, "exp(-tau)")),
+    ("for ever", lambda r: stretch(r, "steady", 1, "0")),
+    ("for ever", lambda r: r["inputs"]["u1"]["impulses"][0].update(amount="1")),
+    ("three times", lambda r: r["periodic"][0]["after"]["solution"].__setitem__(0, "0")),
+    ("three times", lambda r: r["periodic"][0].update(period="4")),
+    ("three times", lambda r: r["periodic"].clear()),
+]
+
+
+@pytest.mark.parametrize(("name", "spoil"), SPOILT_PERIODS)
+def test_the_reader_finds_what_is_wrong_in_a_period(
+    name: str, spoil: Callable[[Record], object]
+) -> None:
+    record = json.loads(json.dumps(stored(name)))
+    spoil(record)
+    with pytest.raises(DisagreementError):
+        check_driven_record(record)
+
+
+def test_an_input_that_repeats_is_told_by_one_period() -> None:
+    (entry,) = stored("three times")["inputs"].values()
+    assert entry["function"] == "2*(step(t) - step(t - 1))*sin(t)"
+    assert entry["impulses"] == [{"amount": "1/2", "at": "2"}]
+    assert entry["repeat"] == {"period": "3", "start": "0", "count": 3}
 
 
 REFUSED: list[tuple[str, Callable[[Record], object]]] = [

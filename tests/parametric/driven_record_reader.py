@@ -176,8 +176,12 @@ def _names(text: str, allowed: set[str]) -> None:
 
 def _check(record: Record, case: Record, known: Mapping[str, Number]) -> None:
     here = _Case(record, case, known)
-    for own in case.get("periodic", ()):
-        _Periodic(here, own).check()
+    told = [_Periodic(here, own) for own in case.get("periodic", ())]
+    for periodic in told:
+        periodic.check()
+    names = [name for periodic in told for name in periodic.inputs]
+    if sorted(names) != sorted(set(record["inputs"]) - set(here.inputs)):
+        raise DisagreementError(f"{', '.join(names) or 'none'} of the inputs that repeat are told")
     instants = [here.number(text) for text in (record["start"], *record["instants"])]
     pieces = case.get("pieces", [{**case, "from": record["start"], "to": None}])
     if len(pieces) != len(instants):
