@@ -136,13 +136,21 @@ def _periodic(model: DrivenModel, own: PeriodicSolution) -> dict[str, Any]:
         "number": own.number,
         "local": own.local,
         "stretches": _stretches(model, own.stretches),
+        "left": [plain(formula) for formula in own.left],
+        "carried": [plain(formula) for formula in own.carried],
     }
+    if own.provided:
+        told["provided"] = [plain(formula) for formula in own.provided]
+    if own.meets:
+        told["meets"] = [plain(formula) for formula in own.meets]
     if own.count is not None:
         told["count"] = own.count
     if own.after is not None:
         told["after"] = in_rows(model, own.after)
     if own.steady is not None:
         told["steady"] = _stretches(model, own.steady)
+    if own.begins is not None:
+        told["begins"] = [plain(formula) for formula in own.begins]
     return told
 
 

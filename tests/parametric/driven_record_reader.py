@@ -352,8 +352,7 @@ class _Periodic:
     def check(self) -> None:
         here, count = self.here, self.own.get("count")
         here.same(self.states(0, 1, Fraction(0)), self.blows(Fraction(0)), "the first period")
-        shown = [n for n in PERIODS if count is None or n < count]
-        shown += [] if count is None else [count]
+        shown = [n for n in PERIODS if count is None or n <= count]
         for n in shown:
             for place, (low, high) in enumerate(zip(self.bounds, self.ends, strict=True)):
                 for share in SHARES:
