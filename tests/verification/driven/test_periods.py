@@ -1,0 +1,108 @@
+"""Inputs that repeat: proved as they are, and refuted with one fault in them."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from fractions import Fraction
+from typing import Any
+
+import pytest
+
+from closedform.notation.expression import Number, Sum
+from closedform.response.driven.response import respond_driven
+from closedform.verification.driven.periods import (
+    blow_check,
+    period_formula_check,
+    period_settings,
+)
+from closedform.verification.driven.verify import verify_driven
+from tests.verification.driven.made import refuted, stated, with_solution
+from tests.verification.tampering import numbers_of, slips, with_number
+
+KINDS: dict[str, dict[str, Any]] = {
+    "doses": {
+        "equations": ["V*c' = -k*V*c + d"],
+        "parameters": dict.fromkeys(("V", "k", "D", "T"), "positive"),
+        "inputs": {"d": {"is": "D*delta(t)", "period": "T"}},
+        "initial": {"c": 0},
+    },
+    "square wave": {
+        "equations": ["x'' + 2*x' + 5*x = F + G", "z = x' - F"],
+        "inputs": {
+            "F": {"pieces": [{"from": "0", "to": "1", "is": "3"}], "period": "4"},
+            "G": "sin(2*t)",
+        },
+        "initial": {"x": 2, "x'": 1},
+    },
+    "some blows": {
+        "equations": ["x'' + 4*x = F"],
+        "inputs": {"F": {"is": "3*delta(t - 1)", "period": "5/2", "count": 3}},
+        "initial": {"x": 0, "x'": 0},
+    },
+}
+each_kind = pytest.mark.parametrize("kind", KINDS)
+
+
+@each_kind
+def test_what_is_right_is_proved(kind: str) -> None:
+    record = verify_driven(respond_driven(stated(KINDS[kind])))
+    assert record.holds
+    assert not record.left_open
+
+
+@each_kind
+def test_slips_in_the_formulas_of_a_period_are_refuted(kind: str) -> None:
+    response = respond_driven(stated(KINDS[kind]))
+    ((setting, _, written),) = period_settings(response, response.solutions[0])
+    assert period_formula_check(setting, written).outcome == "enclosed"
+    first, *others = written.stretches
+    seen = count = 0
+    found = list(slips(first.rows[0], written.local))
+    for _, wrong in found[:: max(1, len(found) // 12)]:
+        stretches = (replace(first, rows=(wrong, *first.rows[1:])), *others)
+        spoiled = replace(written, stretches=stretches)
+        seen += period_formula_check(setting, spoiled).outcome == "refuted"
+        count += 1
+    assert seen >= 0.7 * count > 0
+
+
+def test_formulas_after_the_last_period_are_checked() -> None:
+    response = respond_driven(stated(KINDS["some blows"]))
+    ((setting, _, written),) = period_settings(response, response.solutions[0])
+    assert written.after is not None
+    after = tuple(Sum((formula, Number(Fraction(1)))) for formula in written.after)
+    spoiled = replace(written, after=after)
+    assert period_formula_check(setting, spoiled).outcome == "refuted"
+
+
+@each_kind
+def test_a_number_of_periods_that_is_off_by_one_is_refuted(kind: str) -> None:
+    response = respond_driven(stated(KINDS[kind]))
+    ((setting, _, written),) = period_settings(response, response.solutions[0])
+    other = replace(written, number=written.local, local=written.number)
+    assert period_formula_check(setting, other).outcome == "refuted"
+
+
+@each_kind
+def test_functions_that_are_summed_are_the_free_responses(kind: str) -> None:
+    response = respond_driven(stated(KINDS[kind]))
+    ((setting, functions, _),) = period_settings(response, response.solutions[0])
+    assert blow_check(setting, functions).outcome == "proved"
+    for place, element in numbers_of(functions.parted):
+        if element:
+            wrong = replace(functions, parted=with_number(functions.parted, place, -element))
+            assert blow_check(setting, wrong).outcome == "refuted"
+    for place in range(len(functions.blows)):
+        blows = functions.blows[:place] + functions.blows[place + 1 :]
+        assert blow_check(setting, replace(functions, blows=blows)).outcome == "refuted"
+
+
+@each_kind
+def test_one_period_is_proved_like_any_solution(kind: str) -> None:
+    response = respond_driven(stated(KINDS[kind]))
+    (functions,) = response.solutions[0].periods
+    *others, last = functions.single.intervals
+    single = replace(functions.single, intervals=(*others, replace(last, summands=())))
+    wrong = replace(functions, single=single)
+    found = refuted(with_solution(response, periods=(wrong,)))
+    assert {item for item in found if item.startswith("one period: ")}
