@@ -126,7 +126,8 @@ def _met(response: DrivenResponse) -> Callable[[Resonance], str]:
 def _steady(solution: DrivenSolution) -> str:
     state = solution.steady_state
     if state is None:
-        return ""
+        periodic = [own.steady is not None for own in solution.periodic]
+        return "periodic" if periodic and all(periodic) else ""
     rows: dict[str, list[str]] = {}
     for name, kind in zip(solution.model.rows, state.kinds, strict=True):
         rows.setdefault(KINDS[kind], []).append(name)

@@ -24,6 +24,7 @@ from tests.document.test_parametric_record import VALIDATOR
 from tests.parametric.driven_record_reader import check_driven_record, check_driven_texts
 from tests.response.driven.test_driven_response import MODELS
 from tests.response.driven.test_numbers import mount, pump
+from tests.response.driven.test_repeated_values import repeated
 
 TANK = """title = "A tank that is filled for ten minutes"
 equations = ["V' = q - V/5", "h = V/3"]
@@ -227,6 +228,15 @@ def test_what_is_the_same_in_all_cases_is_told_once() -> None:
     lines = told(respond_driven(mount(None)))
     assert "  stability      undecided in cases 1, 2, 3" in lines
     assert "                 not stable in case 4" in lines
+
+
+def test_inputs_that_repeat_are_told_and_what_they_lead_to() -> None:
+    lines = told(respond_driven(repeated(None)))
+    assert "  repeats        u1 every 3" in lines
+    assert "  steady state   periodic" in lines
+    lines = told(respond_driven(repeated(4)))
+    assert "  repeats        u1 every 3, 4 times" in lines
+    assert not any(line.startswith("  steady state") for line in lines)
 
 
 def test_long_lists_are_cut() -> None:

@@ -18,7 +18,7 @@ from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.surds import SurdSum
 from closedform.model.driven.model import DrivenModel
 from closedform.model.parametric import ParametricModel, ValueSet
-from closedform.notation.expression import Expression
+from closedform.notation.expression import ZERO, Expression
 from closedform.notation.plain import plain
 from closedform.notation.shown import FormulaColumn, cases_latex
 from closedform.response.by_mode import ByMode
@@ -72,16 +72,32 @@ class DrivenResponse:
 
     def __str__(self) -> str:
         """Return the solution, case by case, a line for each row."""
-        lines = []
+        lines: list[str] = []
         for solution in self.solutions:
-            several = solution.condition != "true"
-            if several:
+            if solution.condition == "true":
+                lines += self._lines(solution)
+            else:
                 lines.append(f"if {solution.condition}:")
-            lines += [
-                f"{'  ' if several else ''}{name}({self.model.time}) = {plain(formula)}"
-                for name, formula in zip(self.model.rows, solution.solution, strict=True)
-            ]
+                lines += [f"  {line}" for line in self._lines(solution)]
         return "\n".join(lines)
+
+    def _lines(self, solution: DrivenSolution) -> list[str]:
+        time, rows = self.model.time, self.model.rows
+        lines = [
+            f"{name}({time}) = {plain(formula)}"
+            for name, formula in zip(rows, solution.solution, strict=True)
+        ]
+        for own in solution.periodic:
+            start = "" if own.start == ZERO else f"{plain(own.start)} + "
+            begun = f"{start}({own.number} - 1)*{plain(own.period)}"
+            lines.append(f"added {own.local} after {begun}:")
+            for stretch in own.stretches:
+                lines.append(f"  {plain(stretch.start)} <= {own.local} < {plain(stretch.end)}:")
+                lines += [
+                    f"    {name}: {plain(formula)}"
+                    for name, formula in zip(rows, stretch.rows, strict=True)
+                ]
+        return lines
 
     @property
     def solution(self) -> FormulaColumn:

@@ -12,6 +12,7 @@ from closedform.response.driven.response import respond_driven
 from closedform.response.parametric.numbers import ValuesNotCoveredError
 from tests.response.driven.test_driven_response import MODELS, _by_steps
 from tests.response.driven.test_numbers import CASES, mount, pump
+from tests.response.driven.test_repeated_values import repeated
 
 
 def test_the_solution_is_a_column_that_prints_and_shows() -> None:
@@ -21,6 +22,13 @@ def test_the_solution_is_a_column_that_prints_and_shows() -> None:
     assert latex == response.solution._repr_latex_()
     assert latex.startswith(r"$\displaystyle \left[\begin{array}{c}")
     assert r"\varepsilon(t - 10)" in latex
+
+
+def test_what_inputs_that_repeat_add_is_printed_below_the_solution() -> None:
+    lines = str(respond_driven(repeated(None))).splitlines()
+    assert lines[0].startswith("x1(t) = ")
+    assert lines[2:4] == ["added tau after (n - 1)*3:", "  0 <= tau < 1:"]
+    assert len(lines) == 3 + 3 * 3
 
 
 def test_several_cases_show_side_by_side_and_have_no_common_solution() -> None:
