@@ -28,6 +28,7 @@ from closedform.derivation.driven.solution_steps import (
 from closedform.derivation.driven.state_steps import state_form_step
 from closedform.derivation.driven.substitution_steps import substitution_step
 from closedform.derivation.driven.values_steps import driven_numbers_step
+from closedform.derivation.driven.verification_step import driven_cases_step
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.case_steps import cases_step
 from closedform.derivation.parametric.definitions import definitions_of
@@ -43,9 +44,9 @@ from closedform.derivation.parametric.proof.numbers import Given
 from closedform.derivation.parametric.proof.statements import prove_case_statements
 from closedform.derivation.parametric.result_steps import branch_step
 from closedform.derivation.parametric.variables import names_of
-from closedform.derivation.parametric.verification_step import verification_step
 from closedform.derivation.result_steps import cautions_step
-from closedform.derivation.step import Derivation, Step
+from closedform.derivation.step import Derivation, Matrix, Step
+from closedform.notation.expression import operations
 from closedform.response.driven.numbers import DrivenNumbersAt
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.parametric.points import case_points
@@ -57,6 +58,10 @@ from closedform.verification.record import Check, UnprovedError
 __all__ = ["in_cases"]
 
 POINTS = 2
+LONGEST = 150
+"""Operations in the matrices of a transform up to which they are printed at working."""
+LARGE = 5
+"""The number of rows from which on a transform is printed without its matrices."""
 
 
 def in_cases(
@@ -89,7 +94,10 @@ def in_cases(
             of_the_stacked(s) if s.kind in _OF_THE_MATRIX and s.kind not in kept else s
             for s in steps
         )
-    ends = (verification_step(checks, records, stacked), cautions_step())
+    ends = (
+        driven_cases_step(checks, records, stacked, hats=model.generator is not None),
+        cautions_step(),
+    )
     return Derivation(model.title, (*steps, *ends), checks)
 
 
@@ -125,7 +133,8 @@ def _steps(
     for step in (parameters, state_form_step(writing), generator_step(writing)):
         if step is not None:
             yield step
-    yield characteristic_polynomial_step(stacked)
+    polynomial = characteristic_polynomial_step(stacked)
+    yield replace(polynomial, facts={**polynomial.facts, "joint": True})
     letters = Letters(names_of(stacked))
     told: set[object] = set()
     for branch in stacked.branches:
@@ -133,7 +142,8 @@ def _steps(
         if not cases:
             continue
         if branch.number == 0:
-            yield eigenvalues_step(stacked, letters)
+            eigenvalues = eigenvalues_step(stacked, letters)
+            yield replace(eigenvalues, facts={**eigenvalues.facts, "brief": True, "joint": True})
         else:
             yield branch_step(stacked, branch, records)
         definitions = definitions_step(
@@ -143,9 +153,14 @@ def _steps(
             yield definitions
         if branch.number == 0:
             yield cases_step(stacked)
-            yield from exponential_steps(stacked, cases, letters)
         solutions = [response.solutions[case.number] for case in cases]
-        yield from _results(response, solutions, len(stacked.cases))
+        results = list(_results(response, solutions, len(stacked.cases)))
+        if branch.number == 0:
+            written = all(s.depth == "working" for s in results if s.kind == "driven_transition")
+            for step in exponential_steps(stacked, cases, letters):
+                shorter = _kernels_once(step)
+                yield replace(shorter, depth="full") if written else shorter
+        yield from results
 
 
 def _results(
@@ -164,7 +179,7 @@ def _results(
         [jumps_step(writing, *pair) for pair in told],
         [driven_solution_step(writing, *pair) for pair in told],
         _some(split_step(writing, *pair) for pair in told),
-        [stability_step(writing, *pair) for pair in told],
+        _generic([stability_step(writing, *pair) for pair in told]),
         _some(steady_step(writing, *pair) for pair in told),
         _some(transient_step(writing, *pair) for pair in told),
         _first(_some(substitution_step(response, *pair) for pair in told)),
@@ -178,9 +193,38 @@ def _results(
 _OF_ONE_CASE = ("cases", "number", "numbers", "conditions")
 
 
+def _kernels_once(step: Step) -> Step:
+    """The step with functions that are the same in all cases told once."""
+    kernels: Any = step.facts.get("kernels")
+    if step.kind != "transform":
+        return step
+    told = []
+    for pair in kernels or ():
+        first, *others = pair["rows"]
+        same = all((r["even"], r["odd"]) == (first["even"], first["odd"]) for r in others)
+        cases = tuple(number for row in pair["rows"] for number in row["cases"])
+        rows = [{**first, "cases": cases, "conditions": ()}] if same else pair["rows"]
+        told.append({**pair, "rows": rows})
+    facts = {**step.facts, "kernels": told}
+    if _size(step) > LONGEST:  # the matrices are printed as those of a larger model are
+        facts["n"] = LARGE
+    return replace(step, facts=facts)
+
+
+def _size(step: Step) -> int:
+    """The operations in the matrices of a step."""
+    matrices = [side for s in step.statements for side in s.sides if isinstance(side, Matrix)]
+    return sum(operations(entry) for m in matrices for row in m.rows for entry in row)
+
+
 def _first(steps: Sequence[Step]) -> list[Step]:
     """The steps, of which only that of the first case of all is printed in a working document."""
     return [s if 0 in _tuple(s.facts["cases"]) else replace(s, depth="full") for s in steps]
+
+
+def _generic(steps: Sequence[Step]) -> list[Step]:
+    """The steps, printed in a working document where no equation of parameters is asked for."""
+    return [s if s.facts["generic"] else replace(s, depth="full") for s in steps]
 
 
 def _some(steps: Iterable[Step | None]) -> list[Step]:

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
+from typing import Any
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.hurwitz import HurwitzTest
@@ -132,7 +133,7 @@ def steady_step(
     steady = solution.steady_state
     if steady is None or not steady.steady:
         return None
-    rows = []
+    rows: list[dict[str, Any]] = []
     for place, name in enumerate(writing.model.rows):
         phasor = solution.phasors[place]
         rows.append(
@@ -151,14 +152,32 @@ def steady_step(
         )
     several = len(solution.functions.intervals) > 1
     last = len(solution.functions.intervals) - 1
+    phasors = [row["phasor"] for row in rows if row["phasor"] is not None]
+    phases = [phase for phasor in phasors for phase in phasor["phases"]]
     told = {
         **facts,
         "rows": rows,
+        "phases": phases,
+        "open": any(phase["open"] for phase in phases),
+        "quadrants": _quadrants(phases),
+        "gains": [gain for phasor in phasors for gain in phasor["gains"]],
         "when": writing.within(last) if several else None,
         "constant": all(row["kind"] in ("constant", "zero") for row in rows),
         "growing": any(row["kind"] == "growing" for row in rows),
     }
     return Step("steady", (), told, ("stability",), "summary")
+
+
+_QUADRANTS = {"I": "first", "II": "second", "III": "third", "IV": "fourth"}
+
+
+def _quadrants(phases: Sequence[Mapping[str, Any]]) -> list[dict[str, object]]:
+    """The quadrants in which phases lie, each with its phases."""
+    found: dict[str, list[object]] = {}
+    for phase in phases:
+        if phase["place"] in _QUADRANTS:
+            found.setdefault(_QUADRANTS[phase["place"]], []).append(phase["statement"].sides[0])
+    return [{"quadrant": word, "phases": held} for word, held in found.items()]
 
 
 def transient_step(
@@ -175,7 +194,7 @@ def transient_step(
     return Step("transient", statements, facts, ("steady",), "full")
 
 
-def _phasor(writing: Writing, name: str, phasor: Phasor, row: int) -> dict[str, object]:
+def _phasor(writing: Writing, name: str, phasor: Phasor, row: int) -> dict[str, Any]:
     """Amplitude · cos(w t - phase) for each sinusoid, and what each phase is."""
     parts: list[Side] = [] if phasor.mean_formula == ZERO else [phasor.mean_formula]
     phases = []
@@ -189,7 +208,7 @@ def _phasor(writing: Writing, name: str, phasor: Phasor, row: int) -> dict[str, 
     return {
         "statement": Statement("by amplitude", (symbol, side)),
         "phases": phases,
-        "gains": list(_gains(writing, phasor)),
+        "gains": list(_gains(writing, name, phasor)),
     }
 
 
@@ -220,16 +239,18 @@ def _phase(sinusoid: Sinusoid, symbol: Symbol) -> dict[str, object]:
     return {
         "statement": Statement("phase", (symbol, value)),
         "place": angle.place,
-        "arc": angle.arc is not None and angle.arc[1] != 0,
-        "sinusoid": sinusoid,
+        "open": angle.arc is None,
     }
 
 
-def _gains(writing: Writing, phasor: Phasor) -> Iterator[dict[str, object]]:
-    for sinusoid in phasor.sinusoids:
+def _gains(writing: Writing, name: str, phasor: Phasor) -> Iterator[dict[str, object]]:
+    """How the amplitude stands to that of the only input of its frequency."""
+    for place, sinusoid in enumerate(phasor.sinusoids):
         if sinusoid.lag is not None:
             yield {
+                "row": Symbol("scalar", ("steady",), None, name),
+                "place": phasor.row,
+                "sinusoid": place,
                 "input": writing.inputs[sinusoid.lag.input],
-                "gain": sinusoid.lag.gain,
-                "sinusoid": sinusoid,
+                "gain": Statement("gain", (sinusoid.lag.gain,)),
             }

@@ -6,7 +6,7 @@ from collections.abc import Iterator
 
 from closedform.algebra.field import BaseField, Polynomial, Scalar
 from closedform.algebra.waves import Wave
-from closedform.derivation.driven.signals import waves_formula
+from closedform.derivation.driven.signals import input_formula, waves_formula
 from closedform.derivation.driven.writing import A_HAT, X_HAT, Writing, bold, interval
 from closedform.derivation.formulas import in_order, surd_matrix
 from closedform.derivation.parametric.formulas import as_given
@@ -17,11 +17,11 @@ from closedform.notation.expression import ZERO, Expression, Name
 
 __all__ = ["generator_step", "wave_label"]
 
-W, L = Symbol("matrix", letter="W"), Symbol("matrix", letter="L")
+S, R = Symbol("matrix", letter="S"), Symbol("matrix", letter="R")
 
 
 def generator_step(writing: Writing) -> Step | None:
-    """State alpha(d/dt) u = 0, W and the start values; None without waves."""
+    """State alpha(d/dt) u = 0, S and the start values; None without waves."""
     model = writing.model
     generator = model.generator
     if generator is None:
@@ -32,8 +32,8 @@ def generator_step(writing: Writing) -> Step | None:
         *_literal(writing, places),
         *(_annihilation(writing, generator, k) for k in places),
         Statement("generator vector", (bold("w"), writing.column(_vector(writing, generator)))),
-        Statement("generator", (Symbol("dotted", letter="w"), (W, bold("w")))),
-        Statement("generator matrix", (W, writing.matrix(generator.matrix))),
+        Statement("generator", (Symbol("dotted", letter="w"), (S, bold("w")))),
+        Statement("generator matrix", (S, writing.matrix(generator.matrix))),
         *_stacked(writing, generator),
     ]
     facts = {
@@ -58,7 +58,7 @@ def _literal(writing: Writing, places: list[int]) -> Iterator[Statement]:
     for k in places:
         given, label = writing.model.inputs[k], writing.inputs[k]
         if given.formula != label:
-            yield Statement("named input", (label, given.formula))
+            yield Statement("named input", (label, input_formula(writing, given)))
 
 
 def _annihilation(writing: Writing, generator: Generator, place: int) -> Statement:
@@ -141,20 +141,20 @@ def _stacked(writing: Writing, generator: Generator) -> Iterator[Statement]:
     a, b = Symbol("matrix", letter="A"), Symbol("matrix", letter="B")
     reads = writing.matrix(generator.readout)
     if _picks(generator):
-        yield Statement("readout", (bold("u"), (L, bold("w"))))
-        yield Statement("readout matrix", (L, reads))
+        yield Statement("readout", (bold("u"), (R, bold("w"))))
+        yield Statement("readout matrix", (R, reads))
     vector = Symbol("blocks", ("1",), parts=(bold("x"), bold("w")))
-    fed: Side = (b, L) if _picks(generator) else b
+    fed: Side = (b, R) if _picks(generator) else b
     yield Statement("stacked vector", (X_HAT, vector))
     yield Statement("stacked system", (Symbol("dotted", letter="x_hat"), (A_HAT, X_HAT)))
     yield Statement(
         "stacked matrix",
-        (A_HAT, Symbol("blocks", ("2",), parts=(a, fed, Symbol("zero"), W)), _numbers(writing)),
+        (A_HAT, Symbol("blocks", ("2",), parts=(a, fed, Symbol("zero"), S)), _numbers(writing)),
     )
 
 
 def _picks(generator: Generator) -> bool:
-    """Whether u = L w is more than u = w."""
+    """Whether u = R w is more than u = w."""
     return generator.order != len(generator.tones) or not all(generator.orders)
 
 

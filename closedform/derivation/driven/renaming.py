@@ -40,6 +40,8 @@ def _hatted(symbol: Symbol) -> Symbol:
     symbol = replace(symbol, parts=tuple(map(_retold, symbol.parts)))
     if symbol.kind in _OF_A and symbol.letter in ("A", "") and _means_a(symbol):
         return replace(symbol, letter="A_hat")
+    if symbol.kind == "matrix" and symbol.letter == "R" and symbol.indices:
+        return replace(symbol, letter="Q")  # R without indices reads the inputs from w
     if symbol.kind in ("vector", "derivative") and symbol.letter in ("x", ""):
         return replace(symbol, letter="x_hat")
     return symbol

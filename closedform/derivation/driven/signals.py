@@ -9,12 +9,21 @@ from closedform.algebra.field import Scalar
 from closedform.algebra.waves import Wave
 from closedform.derivation.driven.writing import Writing, interval
 from closedform.derivation.step import Side, Symbol
+from closedform.model.driven.model import Input
 from closedform.model.driven.signal import Burst, Signal
-from closedform.notation.expression import ONE, ZERO, Call, Expression, power_of
+from closedform.notation.expression import (
+    ONE,
+    ZERO,
+    Call,
+    Expression,
+    is_expression,
+    operations,
+    power_of,
+)
 from closedform.notation.terms import negated, opened, sum_of
 from closedform.response.driven.composition import shifted
 
-__all__ = ["impulses_of", "signal_side", "waves_formula", "waves_in"]
+__all__ = ["impulses_of", "input_formula", "signal_side", "waves_formula", "waves_in"]
 
 OTHERWISE = Symbol("interval", ("otherwise",))
 Piece = tuple[Scalar | None, Scalar | None, Expression]
@@ -51,6 +60,16 @@ def signal_side(writing: Writing, signal: Signal) -> Side:
     if not parts:
         return ZERO
     return parts[0] if len(parts) == 1 else Symbol("sum", parts=tuple(parts))
+
+
+def input_formula(writing: Writing, given: Input) -> Expression:
+    """Return how an input is written: a function in an equation by its waves, if shorter."""
+    if given.name or given.signal.repeat is not None:
+        return given.formula
+    side = signal_side(writing, given.signal)
+    if is_expression(side) and operations(side) <= operations(given.formula):
+        return side
+    return given.formula
 
 
 def waves_in(writing: Writing, column: int, place: int) -> list[Wave]:

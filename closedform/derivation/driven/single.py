@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import replace
+from typing import Any
 
 from flint import acb
 
@@ -31,12 +32,13 @@ from closedform.derivation.driven.solution_steps import (
 from closedform.derivation.driven.state_steps import state_form_step
 from closedform.derivation.driven.substitution_steps import substitution_step
 from closedform.derivation.driven.values_steps import driven_values_step
-from closedform.derivation.driven.writing import Writing
+from closedform.derivation.driven.verification_step import driven_verification_step
+from closedform.derivation.driven.writing import Writing, calls_in
 from closedform.derivation.parametric.proof.ground import said_in
 from closedform.derivation.proof.evaluation import expressions_in
 from closedform.derivation.proof.statements import prove_statements
 from closedform.derivation.resolvent_steps import resolvent_steps
-from closedform.derivation.result_steps import cautions_step, verification_step
+from closedform.derivation.result_steps import cautions_step
 from closedform.derivation.spectrum_steps import (
     characteristic_polynomial_step,
     eigenvalues_step,
@@ -84,7 +86,7 @@ def in_numbers(
         substitution_step(response, solution, facts),
     )
     results += [step for step in more if step is not None]
-    abbreviations = abbreviations_step(stacked, names_printed(results), digits)
+    abbreviations = abbreviations_step(stacked, names_printed([*inner, *results]), digits)
     inner += [] if abbreviations is None else [abbreviations]
     values = driven_values_step(writing, solution, facts, digits)
     own = [step for step in (*opening, resonance, *results, values) if step is not None]
@@ -106,7 +108,10 @@ def in_numbers(
     middle = inner[:-1] if abbreviations is not None else inner
     if resonance is not None:
         middle = [*middle[:2], resonance, *middle[2:]]
-    ends = (verification_step(checks, model.time), cautions_step())
+    ends = (
+        driven_verification_step(checks, model.time, hats=model.generator is not None),
+        cautions_step(),
+    )
     return Derivation(model.title, (*first, *middle, *results, *last, values, *ends), checks)
 
 
@@ -122,6 +127,20 @@ def names_printed(steps: Sequence[Step]) -> frozenset[str]:
     )
 
 
+def _is_plain(eigenvalues: Step) -> bool:
+    """Whether the eigenvalues are rational and simple, so that a table tells nothing more."""
+    rows: Any = eigenvalues.facts["rows"]
+    simple = all(row["multiplicity"] == 1 for row in rows)
+    formulas = [
+        formula
+        for s in eigenvalues.statements
+        for side in s.sides
+        for formula in expressions_in(side)
+    ]
+    rational = not any(calls_in(formula) or names_in(formula) for formula in formulas)
+    return simple and rational and len(eigenvalues.statements) == len(rows)
+
+
 def _on_the_matrix(check: Check) -> Check:
     return replace(check, item="statements on the matrix and its exponential")
 
@@ -129,9 +148,10 @@ def _on_the_matrix(check: Check) -> Check:
 def _of_the_matrix(response: Response, digits: int) -> Iterator[Step]:
     """From the characteristic polynomial to e^(At), of any matrix."""
     polynomial = characteristic_polynomial_step(response)
-    yield replace(polynomial, facts={**polynomial.facts, "brief": True})
+    yield replace(polynomial, facts={**polynomial.facts, "brief": True, "joint": True})
     eigenvalues = eigenvalues_step(response, digits)
-    yield replace(eigenvalues, facts={**eigenvalues.facts, "brief": True})
+    told = {**eigenvalues.facts, "brief": True, "joint": True, "plain": _is_plain(eigenvalues)}
+    yield replace(eigenvalues, facts=told)
     yield from named_roots_steps(response, digits)
     if response.has_chains_in_print:
         small = len(response.model.states) <= AT_SIGHT

@@ -66,7 +66,7 @@ def driven_transition_step(
     upper = unboxed(Matrix(tuple(row[:n] for row in rows[:n])))
     statements = []
     if size > n:
-        a, w = Symbol("transition", argument=t, letter="A"), Symbol("transition", (), t, "W")
+        a, w = Symbol("transition", argument=t, letter="A"), Symbol("transition", (), t, "S")
         phi = Symbol("matrix", letter="Phi", argument=t)
         blocks = Symbol("blocks", ("2",), parts=(a, phi, Symbol("zero"), w))
         hat = Symbol("transition", argument=t, letter=A_HAT.letter)
@@ -286,4 +286,6 @@ def split_step(writing: Writing, solution: DrivenSolution, facts: dict[str, obje
             }
         )
     several = len(functions.intervals) > 1
-    return Step("split", (), {**facts, "rows": rows, "several": several}, ("driven_solution",))
+    told = {**facts, "rows": rows, "several": several}
+    depth: Depth = "working" if facts["only"] else "full"
+    return Step("split", (), told, ("driven_solution",), depth)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from closedform.derivation.driven.signals import input_formula
 from closedform.derivation.driven.writing import Writing, bold
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.model.driven.model import Jet
@@ -82,7 +83,7 @@ def _matrices(writing: Writing) -> Iterator[Statement]:
     yield Statement("state vector", (bold("x"), writing.column(writing.states)))
     if reduction.input_matrix is not None:
         labels = writing.inputs
-        formulas = [given.formula for given in model.inputs]
+        formulas = [input_formula(writing, given) for given in model.inputs]
         sides: list[Side] = [bold("u"), writing.column(labels)]
         if list(labels) != formulas:
             sides.append(writing.column(formulas))

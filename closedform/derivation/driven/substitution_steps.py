@@ -38,7 +38,7 @@ def substitution_step(
     """
     writing = Writing(response.model)
     equations = _equations(writing)
-    chosen = next((e for e in equations if e.of_inputs), equations[0])
+    chosen = max(equations, key=lambda e: (_tops(writing, e), bool(e.of_inputs), -e.number))
     place = _busiest(writing, chosen)
     interval = solution.functions.intervals[place]
     terms = balance_terms(response, solution, chosen.of_unknowns, interval)
@@ -79,6 +79,12 @@ def _equations(writing: Writing) -> list[_Equation]:
         top = (Jet(jet.name, jet.order + 1), one)
         found.append(_Equation(k + 1, (top, *others), fed))
     return found
+
+
+def _tops(writing: Writing, equation: _Equation) -> bool:
+    """Whether a highest derivative stands in the equation, which is no state."""
+    jets = writing.model.reduction.jets
+    return any(jet.order and jet not in jets for jet, _ in equation.of_unknowns)
 
 
 def _busiest(writing: Writing, equation: _Equation) -> int:

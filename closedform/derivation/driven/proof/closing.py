@@ -22,6 +22,7 @@ __all__ = [
     "balance",
     "by_amplitude",
     "factor_of_a",
+    "gain",
     "hurwitz_determinant",
     "identity",
     "phase",
@@ -245,6 +246,28 @@ def by_amplitude(spot: Spot, said: Said) -> Iterator[Finding]:
             else:
                 total += ball_at(formula_of(part), names)
         yield equal("amplitude and phase", total, ball_at(formula, names))
+
+
+def gain(spot: Spot, said: Said) -> Iterator[Finding]:
+    """The ratio of the amplitude in print to that of the one input of its frequency."""
+    phasor = spot.solution.phasors[said.row["place"]]
+    lag = None if phasor is None else phasor.sinusoids[said.row["sinusoid"]].lag
+    if phasor is None or lag is None:
+        yield Fault("gain", "no input has this frequency by itself")
+        return
+    frequency = spot.element(phasor.sinusoids[said.row["sinusoid"]].frequency)
+    parts = acb(0)
+    for wave in spot.waves(lag.input, len(spot.instants) - 1):
+        own = spot.element(wave.frequency)
+        if wave.kernel != "one" and (own - frequency).contains(0):
+            parts += spot.element(wave.amount) * (acb(0, 1) if wave.kernel == "sin" else 1)
+    rows: Any = said.step.facts["rows"]
+    side = rows[said.row["place"]]["phasor"]["statement"].sides[1]
+    held = side.parts if isinstance(side, Symbol) and side.kind == "sum" else (side,)
+    sinusoids = [p for p in held if isinstance(p, Symbol) and p.kind == "sinusoid"]
+    amplitude = sinusoids[said.row["sinusoid"]].parts[0]
+    value = ball_at(formula_of(said.statement.sides[0]), spot.names)
+    yield equal("gain", value * acb(abs(acb(parts))), ball_at(formula_of(amplitude), spot.names))
 
 
 def phase(spot: Spot, said: Said) -> Iterator[Finding]:

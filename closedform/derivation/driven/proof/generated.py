@@ -15,6 +15,7 @@ from closedform.derivation.driven.proof.values import (
     column_at,
     derivative,
     equal,
+    formula_at,
     side_at,
 )
 from closedform.derivation.driven.writing import A_HAT, X_HAT, Writing, bold, unboxed
@@ -101,8 +102,18 @@ def named_input(spot: Spot, said: Said) -> Iterator[Finding]:
     """The name of an input that stands in an equation as a formula."""
     label, formula = said.statement.sides
     model = spot.model
-    pairs = zip(Writing(model).inputs, (given.formula for given in model.inputs), strict=True)
-    yield from whether((label, formula) in list(pairs), "input", "it is called otherwise")
+    pairs = zip(Writing(model).inputs, model.inputs, strict=True)
+    found = [k for k, (name, _) in enumerate(pairs) if name == label]
+    if not found or model.inputs[found[0]].name:
+        writing = Writing(model)
+        known = [(n, g.formula) for n, g in zip(writing.inputs, model.inputs, strict=True)]
+        yield from whether((label, formula) in known, "input", "it is called otherwise")
+        return
+    for place in spot.places:
+        t = spot.times(place)[0]
+        names = {**spot.names, model.time: t}
+        value = formula_at(formula_of(formula), names, names)
+        yield equal("input", value, spot.input_series(found[0], place, t)[0])
 
 
 def _order_of(spot: Spot, name: str) -> tuple[int, int] | None:
@@ -137,7 +148,7 @@ def annihilation(spot: Spot, said: Said) -> Iterator[Finding]:
 
 
 def generator_vector(spot: Spot, said: Said) -> Iterator[Finding]:
-    """W holds the derivatives of each input, as many as its block has rows."""
+    """The vector w holds the derivatives of each input, as many as its block has rows."""
     symbol, column = said.statement.sides
     writing, generator = Writing(spot.model), spot.model.generator
     expected = [
@@ -150,23 +161,23 @@ def generator_vector(spot: Spot, said: Said) -> Iterator[Finding]:
 
 
 def generator(_spot: Spot, said: Said) -> Iterator[Finding]:
-    """W' = W w: nothing but this is said."""
-    expected = (Symbol("dotted", letter="w"), (Symbol("matrix", letter="W"), bold("w")))
-    yield from whether(said.statement.sides == expected, "w' = W w", "it is another equation")
+    """The equation w' = S w: nothing but this is said."""
+    expected = (Symbol("dotted", letter="w"), (Symbol("matrix", letter="S"), bold("w")))
+    yield from whether(said.statement.sides == expected, "w' = S w", "it is another equation")
 
 
 def generator_matrix(spot: Spot, said: Said) -> Iterator[Finding]:
-    """W, number by number, and w' = W w along the inputs."""
+    """S, number by number, and w' = S w along the inputs."""
     if spot.generator is None:
-        yield Fault("W", "the model has no waves")
+        yield Fault("S", "the model has no waves")
         return
-    yield from same_matrix(spot, said, "W", spot.generator)
+    yield from same_matrix(spot, said, "S", spot.generator)
     for place in spot.places:
         t = spot.times(place)[0]
         w = acb_mat([[e] for e in spot.generated(place, t)])
         step = _derived(spot, place, t)
         for k in range(w.nrows()):
-            yield equal("w' = W w", (spot.generator * w)[k, 0], step[k])
+            yield equal("w' = S w", (spot.generator * w)[k, 0], step[k])
 
 
 def _derived(spot: Spot, place: int, t: acb) -> list[acb]:
@@ -181,7 +192,7 @@ def _derived(spot: Spot, place: int, t: acb) -> list[acb]:
 
 
 def generator_start(spot: Spot, said: Said) -> Iterator[Finding]:
-    """W at the origin of the waves that are printed beside it."""
+    """The start of w, at the origin of the waves that are printed beside it."""
     symbol, column = said.statement.sides
     if not isinstance(symbol, Symbol) or symbol.argument is None:
         raise TypeError(f"{symbol} is no vector at an instant")
@@ -233,10 +244,10 @@ def _is_on(spot: Spot, burst: Any, place: int) -> bool:
 
 
 def tone(spot: Spot, said: Said) -> Iterator[Finding]:
-    """An eigenvalue of W."""
+    """An eigenvalue of S."""
     (side,) = said.statement.sides
     if spot.generator is None:
-        yield Fault("eigenvalue of W", "there is no W")
+        yield Fault("eigenvalue of S", "there is no S")
         return
     if isinstance(side, Symbol):
         rate, turn = (ball_at(formula_of(part), spot.names) for part in side.parts)
@@ -245,22 +256,22 @@ def tone(spot: Spot, said: Said) -> Iterator[Finding]:
         values = [ball_at(formula_of(side), spot.names)]
     polynomial = spot.generator.charpoly()
     for value in values:
-        yield equal("eigenvalue of W", polynomial(value), acb(0))
+        yield equal("eigenvalue of S", polynomial(value), acb(0))
 
 
 def readout(_spot: Spot, said: Said) -> Iterator[Finding]:
-    """U = L w: nothing but this is said."""
-    expected = (bold("u"), (Symbol("matrix", letter="L"), bold("w")))
-    yield from whether(said.statement.sides == expected, "u = L w", "it is another equation")
+    """The equation u = R w: nothing but this is said."""
+    expected = (bold("u"), (Symbol("matrix", letter="R"), bold("w")))
+    yield from whether(said.statement.sides == expected, "u = R w", "it is another equation")
 
 
 def readout_matrix(spot: Spot, said: Said) -> Iterator[Finding]:
-    """L gives u from w."""
+    """R gives u from w."""
     printed = matrix_at(as_matrix(said.statement.sides[-1]), spot.names)
     for place in spot.places:
         t = spot.times(place)[0]
         w = acb_mat([[e] for e in spot.generated(place, t)])
-        yield from agreeing("L w", printed * w, spot.inputs_at(place, t))
+        yield from agreeing("R w", printed * w, spot.inputs_at(place, t))
 
 
 def stacked_vector(_spot: Spot, said: Said) -> Iterator[Finding]:
@@ -278,8 +289,8 @@ def stacked_system(_spot: Spot, said: Said) -> Iterator[Finding]:
 def stacked_matrix(spot: Spot, said: Said) -> Iterator[Finding]:
     """The stacked matrix, in letters and in numbers."""
     symbol, blocks, matrix = said.statement.sides
-    a, b, l_, w = (Symbol("matrix", letter=letter) for letter in "ABLW")
-    shapes = [Symbol("blocks", ("2",), parts=(a, fed, Symbol("zero"), w)) for fed in (b, (b, l_))]
+    a, b, r, w = (Symbol("matrix", letter=letter) for letter in "ABRS")
+    shapes = [Symbol("blocks", ("2",), parts=(a, fed, Symbol("zero"), w)) for fed in (b, (b, r))]
     yield from whether(symbol == A_HAT and blocks in shapes, "stacked matrix", "in other letters")
     printed = matrix_at(as_matrix(matrix), spot.names)
     yield from agreeing("stacked matrix", printed, spot.stacked)

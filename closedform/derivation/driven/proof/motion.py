@@ -47,7 +47,7 @@ def blocks(spot: Spot, said: Said) -> Iterator[Finding]:
         Symbol("transition", argument=t, letter="A"),
         Symbol("matrix", letter="Phi", argument=t),
         Symbol("zero"),
-        Symbol("transition", argument=t, letter="W"),
+        Symbol("transition", argument=t, letter="S"),
     )
     expected = (
         Symbol("transition", argument=t, letter=A_HAT.letter),
@@ -57,7 +57,7 @@ def blocks(spot: Spot, said: Said) -> Iterator[Finding]:
 
 
 _BLOCKS = {"upper left": ("transition", "A"), "upper right": ("matrix", "Phi")}
-_BLOCKS |= {"lower right": ("transition", "W")}
+_BLOCKS |= {"lower right": ("transition", "S")}
 
 
 def upper(spot: Spot, said: Said) -> Iterator[Finding]:

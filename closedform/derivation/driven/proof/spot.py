@@ -63,13 +63,13 @@ class Spot:
 
     @cached_property
     def generator(self) -> acb_mat | None:
-        """W, as the model has it."""
+        """S, as the model has it."""
         generator = self.model.generator
         return None if generator is None else self.matrix(generator.matrix)
 
     @cached_property
     def stacked(self) -> acb_mat:
-        """The matrix of states and inputs, put together from A, B, W and the readout."""
+        """The matrix of states and inputs, put together from A, B, S and the readout."""
         n, w = self.a.nrows(), self.generator
         if w is None or self.model.generator is None or self.b is None:
             return self.a

@@ -10,6 +10,7 @@ from flint import acb, acb_mat
 from closedform.derivation.driven.model_steps import SECOND_ORDER, second_order_matrices
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.values import as_matrix, column_at, equal, formula_at
+from closedform.derivation.driven.signals import input_formula
 from closedform.derivation.driven.writing import Writing, bold, unboxed
 from closedform.derivation.parametric.proof.ground import Said
 from closedform.derivation.parametric.proof.model import formula_of
@@ -269,7 +270,7 @@ def input_vector(spot: Spot, said: Said) -> Iterator[Finding]:
     writing = Writing(spot.model)
     expected = [
         writing.column(writing.inputs),
-        writing.column(given.formula for given in spot.model.inputs),
+        writing.column(input_formula(writing, given) for given in spot.model.inputs),
     ]
     same = symbol == bold("u") and list(columns) == expected[: len(columns)] and bool(columns)
     yield from whether(same, "inputs", "it is another column")

@@ -101,6 +101,7 @@ PROVERS: dict[str, Prover] = {
     "transient": closing.transient,
     "by amplitude": closing.by_amplitude,
     "phase": closing.phase,
+    "gain": closing.gain,
     "given value": within,
     "in numbers": within,
 }
