@@ -88,17 +88,22 @@ class Setting:
         ]
         return TimedSum.of(self.field, len(self.model.rows), parts)
 
+    @cached_property
+    def _transition(self) -> ExponentialMatrix:
+        """The rows of the states in the exponential of the stacked matrix."""
+        zero, one, n = self.field.domain.zero, self.field.domain.one, self.states
+        size = range(int(self.exponential.shape[0]))
+        top = self.field.matrix([[one if i == j else zero for j in size] for i in range(n)])
+        return self.exponential.after(top)
+
     def freed(self, column: FieldMatrix, k: int, constant: Constant | None = None) -> TimedSum:
         """Return constant · e^(A (t - a)) column, n rows, for the k-th instant a."""
-        zero, one = self.field.domain.zero, self.field.domain.one
         size = int(self.exponential.shape[0])
-        n = self.states
-        whole = self.field.matrix([*column.to_list(), *[[zero]] * (size - n)])
-        top = self.field.matrix([[one if i == j else zero for j in range(size)] for i in range(n)])
-        function = self.exponential.times(whole).after(top)
+        below = [[self.field.domain.zero]] * (size - self.states)
+        function = self._transition.times(self.field.matrix([*column.to_list(), *below]))
         key = (constant or ONE(self.field), self.instants[k])
         parts = [((*key, term.factor.p), term.residues) for term in function.terms]
-        return TimedSum.of(self.field, n, parts)
+        return TimedSum.of(self.field, self.states, parts)
 
     def nothing(self, rows: int) -> TimedSum:
         """Return the functions that are zero."""

@@ -45,19 +45,20 @@ class TimedSum:
         field: BaseField, rows: int, parts: Iterable[tuple[Key, Sequence[RootMatrix]]]
     ) -> TimedSum:
         """Return a sum, those of one key added up and polynomials counted from 0."""
-        found: dict[Key, list[RootMatrix]] = {}
+        settled: list[tuple[Key, Sequence[RootMatrix]]] = []
         for (constant, origin, p), residues in parts:
-            own = _from_zero(field, origin, residues) if _is_root_zero(p) else list(residues)
+            if all(residue.is_zero for residue in residues):
+                continue
+            own = _from_zero(field, origin, residues) if _is_root_zero(p) else residues
             start = field.domain.zero if _is_root_zero(p) else origin
-            for weight, settled in settled_constant(field, constant):
-                key = (settled, start, p)
+            for weight, one in settled_constant(field, constant):
                 scaled = own if weight == 1 else [_times(field, r, weight) for r in own]
-                found[key] = _added(found[key], scaled) if key in found else scaled
-        return TimedSum(field, rows, {key: tuple(residues) for key, residues in found.items()})
+                settled.append(((one, start, p), scaled))
+        return TimedSum(field, rows, _gathered(settled))
 
     def __add__(self, other: TimedSum) -> TimedSum:
-        both = (*self.parts.items(), *other.parts.items())
-        return TimedSum.of(self.field, self.rows, both)
+        both = _gathered((*self.parts.items(), *other.parts.items()))
+        return TimedSum(self.field, self.rows, both)
 
     def __sub__(self, other: TimedSum) -> TimedSum:
         return self + other.scaled(-self.field.domain.one)
@@ -72,12 +73,12 @@ class TimedSum:
 
     def derivative(self) -> TimedSum:
         """Return df/dt: the coefficients lambda R_j + R_(j+1)."""
-        parts: list[tuple[Key, list[RootMatrix]]] = []
+        parts: dict[Key, tuple[RootMatrix, ...]] = {}
         for key, residues in self.parts.items():
             turned = [r.times_root() for r in residues]
             higher = [a + b for a, b in zip(turned[:-1], residues[1:], strict=True)]
-            parts.append((key, [*higher, turned[-1]]))
-        return TimedSum.of(self.field, self.rows, parts)
+            parts[key] = (*higher, turned[-1])
+        return TimedSum(self.field, self.rows, parts)
 
     def fault(self, vanishes: Vanishes) -> int | None:
         """Return the row (from 1) of a coefficient that is not zero, or None if f is zero."""
@@ -161,6 +162,16 @@ def _from_zero(
 
 def _times(field: BaseField, residue: RootMatrix, weight: Scalar) -> RootMatrix:
     return residue.scaled(field.polynomial([field.domain.convert(weight)]))
+
+
+def _gathered(
+    parts: Iterable[tuple[Key, Sequence[RootMatrix]]],
+) -> dict[Key, tuple[RootMatrix, ...]]:
+    """The parts with those of one key added up."""
+    found: dict[Key, Sequence[RootMatrix]] = {}
+    for key, residues in parts:
+        found[key] = _added(found[key], residues) if key in found else residues
+    return {key: tuple(residues) for key, residues in found.items()}
 
 
 def _added(left: Sequence[RootMatrix], right: Sequence[RootMatrix]) -> list[RootMatrix]:
