@@ -11,6 +11,7 @@ from closedform.algebra.domain import ParameterDomain
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.factor_structure import FactorStructure
 from closedform.algebra.field import Polynomial, Scalar, rational
+from closedform.algebra.known_roots import has_known_roots
 from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
 from closedform.algebra.polynomial_factors import discriminant_in_last
 from closedform.errors import InputError
@@ -104,8 +105,8 @@ def _denominators(
                             yield field.of_polynomial(element.denom)
     for term, structure in zip(exponential.terms, structures, strict=True):
         factor = term.factor
-        if factor.degree < 3:
-            continue
+        if factor.degree < 3 or has_known_roots(field, factor.p):
+            continue  # the roots of an irreducible polynomial in numbers are simple
         if factor.roots.form == "even" and factor.roots.squares is not None:
             yield field.of_polynomial(factor.roots.squares.nth(0).numer)
         if structure is None or structure.simple is None:

@@ -13,6 +13,7 @@ from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.exceptional import RootsUnknownError, discriminant_of, roots_unknown
 from closedform.algebra.factor_structure import FactorStructure
 from closedform.algebra.field import Polynomial, Scalar
+from closedform.algebra.known_roots import KnownRoot, has_known_roots, known_roots
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.spectrum import Factor
 
@@ -28,6 +29,7 @@ RegimeKind = Literal[
     "squares",
     "quartet",
     "root and pair",
+    "known roots",
 ]
 SquareSign = Literal["circular", "hyperbolic"]
 SquareSigns = tuple[SquareSign, ...]
@@ -42,6 +44,7 @@ class Regime:
     hyperbolic    a ± kappa                       decaying    real roots, all negative
     real roots    real roots, all different       squares     a ± sqrt(mu), `signs` of the mu
     quartet       a ± sigma ± i omega             root and pair   a real root and a pair
+    known roots   numbers: real roots and pairs, as `roots` tells
 
     `conditions` narrow the domain to the regime; none where it is the only one.  `which` is
     the place of the real root beside a pair, in the order by real, then imaginary part.
@@ -51,6 +54,7 @@ class Regime:
     conditions: tuple[Comparison, ...] = ()
     signs: SquareSigns = ()
     which: int = 0
+    roots: tuple[KnownRoot, ...] = ()
 
 
 def regimes_of(
@@ -62,13 +66,16 @@ def regimes_of(
     """Return the regimes of a factor on a domain where its exceptional set does not vanish.
 
     Raises RootsUnknownError for a factor of degree 4 and more without a structure that
-    says how its roots lie, unless it is even of degree 4.
+    says how its roots lie, unless it is even of degree 4, or its coefficients are numbers.
     """
     if factor.degree == 1:
         return (Regime("single"),)
     if factor.degree == 2:
         return _quadratic(factor, domain)
     roots = factor.roots
+    plain = factor.degree == 4 and roots.form == "even"
+    if has_known_roots(field, factor.p) and not plain:
+        return (Regime("known roots", roots=known_roots(field, factor.p)),)
     if roots.form == "even" and roots.squares is not None:
         if structure is not None and structure.squared and structure.negative:
             signs: SquareSigns = ("circular",)
@@ -94,7 +101,7 @@ def require_known_roots(
         if even
         else (not structure.squared and structure.real is not None)
     )
-    if not settled:
+    if not settled and not has_known_roots(field, factor.p):
         raise roots_unknown(field, factor.p)
 
 

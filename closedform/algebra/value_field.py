@@ -64,6 +64,13 @@ class FieldWithPi(BaseField):
             raise ValueError(f"{element} has the number pi in it")
         return value
 
+    def rational_parts(self, element: Scalar) -> list[tuple[int, int, int]]:
+        """Return (numerator, denominator, radicand) for every coefficient of an element."""
+        if not element:
+            return []
+        coefficients = [*element.numer.coeffs(), *element.denom.coeffs()]
+        return [part for c in coefficients for part in self._base.rational_parts(c)]
+
     def enclose(self, element: Scalar) -> arb:
         """Return a ball that holds the element, at FLINT's current precision."""
         above, below = (self._enclosed(q) for q in (element.numer, element.denom))

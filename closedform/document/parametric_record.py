@@ -20,6 +20,7 @@ from closedform.notation.rational_formula import rational_formula
 from closedform.notation.terms import surd_formula
 from closedform.response.parametric.case import Case, WrittenQuantity
 from closedform.response.parametric.numbers import NumbersAt
+from closedform.response.parametric.quantities import ResidueDefinition
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.record import VerificationRecord
@@ -112,8 +113,13 @@ def _quantity(field: ParameterField, quantity: WrittenQuantity) -> dict[str, Any
         return {"definition": plain(quantity.formula)}
     if quantity.root is None:
         raise TypeError(f"{quantity.name} has no definition")
-    polynomial = _texts(field, quantity.root.polynomial)
-    return {"polynomial": polynomial, "which": quantity.root.which, "part": "real"}
+    root = quantity.root
+    told: dict[str, Any] = {"polynomial": _texts(field, root.polynomial), "which": root.which}
+    told["part"] = root.part or "real"
+    if isinstance(root, ResidueDefinition):
+        told |= {"numerator": _texts(field, root.numerator), "weight": str(root.weight)}
+        told |= {"beside": _texts(field, root.beside)}
+    return told
 
 
 def _eigenvalue(

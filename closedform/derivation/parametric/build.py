@@ -82,7 +82,9 @@ def _steps(
         else:
             yield branch_step(response, branch, records)
         definitions = definitions_step(
-            response, definitions_of(response, cases, told), branch=branch.number
+            response,
+            definitions_of(response, cases, told, digits=digits),
+            branch=branch.number,
         )
         if definitions is not None:
             yield definitions

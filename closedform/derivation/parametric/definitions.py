@@ -7,10 +7,12 @@ from dataclasses import dataclass
 
 from closedform.derivation.formulas import ZERO
 from closedform.derivation.parametric.formulas import polynomial_formula
+from closedform.derivation.parametric.known_numbers import amount_rows, known_rows
 from closedform.derivation.parametric.variables import variables_of
 from closedform.derivation.step import Statement
 from closedform.notation.expression import Expression, Name
 from closedform.response.parametric.case import Case, WrittenQuantity
+from closedform.response.parametric.quantities import RootDefinition
 from closedform.response.parametric.response import ParametricResponse
 
 __all__ = ["Definitions", "definitions_of"]
@@ -28,11 +30,14 @@ class Definitions:
 
     A row of `formulas` is {statement, cases, words}; one of `roots` is {statement, names,
     places, turned, cases}: the names are zeros of the polynomial at these places, counted
-    from the smallest, or their opposites where `turned`.
+    from the smallest, or their opposites where `turned`.  `known` and `amounts` are those of
+    roots that are numbers, as `known_rows` and `amount_rows` give them.
     """
 
     formulas: list[dict[str, object]]
     roots: list[dict[str, object]]
+    known: list[dict[str, object]]
+    amounts: list[dict[str, object]]
 
 
 WORDS = {
@@ -44,9 +49,12 @@ WORDS = {
 
 
 def definitions_of(
-    response: ParametricResponse, cases: Sequence[Case], told: set[object]
+    response: ParametricResponse, cases: Sequence[Case], told: set[object], *, digits: int = 6
 ) -> Definitions:
-    """Return the definitions that these cases need and that are not in `told`; add them to it."""
+    """Return the definitions that these cases need and that are not in `told`; add them to it.
+
+    Numbers that do not hang on the parameters come with decimals of so many `digits`.
+    """
     model = response.model
     own = {d.name for d in model.abbreviations}
     formulas: list[dict[str, object]] = []
@@ -70,7 +78,10 @@ def definitions_of(
                 }
             )
     return Definitions(
-        formulas, [row for case in cases for row in _roots(response, case, told, here)]
+        formulas,
+        [row for case in cases for row in _roots(response, case, told, here)],
+        [row for case in cases for row in known_rows(response, case, told, digits)],
+        [row for case in cases for row in amount_rows(response, case, told, digits)],
     )
 
 
@@ -106,13 +117,15 @@ def _roots(
     field = response.model.field
     rows: list[dict[str, object]] = []
     for mode in case.modes:
+        if mode.regime.kind == "known roots":
+            continue
         named = [q for q in case.quantities if q.name in mode.names and q.root is not None]
         fresh = [q for q in named if _Key(q.name, q.root) not in told]
         if not fresh:
             continue
         told.update(_Key(q.name, q.root) for q in fresh)
         turned = mode.regime.kind == "decaying"
-        roots = [q.root for q in fresh if q.root is not None]
+        roots = [q.root for q in fresh if isinstance(q.root, RootDefinition)]
         degree = len(roots[0].polynomial) - 1
         places = [degree + 1 - r.which if turned else r.which for r in roots]
         polynomial = mode.factor.polynomial if turned else roots[0].polynomial

@@ -254,9 +254,12 @@ def definitions_step(
     response: ParametricResponse, definitions: Definitions, *, branch: int
 ) -> Step | None:
     """Define the names in the results; None if there is nothing to define."""
-    if not definitions.formulas and not definitions.roots:
+    if not (definitions.formulas or definitions.roots or definitions.known):
         return None
     facts = {
+        "known": definitions.known,
+        "amounts": definitions.amounts,
+        "several": len(response.branches[branch].spectrum.factors) > 1,
         "formulas": definitions.formulas,
         "roots": definitions.roots,
         "told": _told(definitions.formulas),

@@ -57,6 +57,12 @@ def _set(
     t = Name(model.time)
     names = [*model.states, *(o.name for o in model.outputs)][skipped:]
     formulas = [*numbers.solution, *numbers.outputs][skipped:]
+    known = {
+        name
+        for mode in response.cases[numbers.case].modes
+        if mode.regime.kind == "known roots"
+        for name in mode.written_names
+    }
     return {
         "label": numbers.label,
         "case": numbers.case,
@@ -70,6 +76,7 @@ def _set(
         "quantities": [
             {"name": Name(q.name), "decimal": q.decimal, "exact": q.exact is not None}
             for q in numbers.quantities
+            if q.name not in known
         ],
         "formulas": [
             Statement(

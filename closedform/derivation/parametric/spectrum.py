@@ -28,6 +28,7 @@ __all__ = [
     "eigenvalues_of",
     "functions_of",
     "kernels_of",
+    "known_value",
     "real_eigenvalues",
     "values_of",
 ]
@@ -99,6 +100,14 @@ def values_of(field: ParameterField, case: Case, mode: Mode) -> Iterator[Side]:
             root, sigma, omega = names
             yield root
             yield Symbol("pair", parts=(sigma, omega))
+        case "known roots":
+            yield from (known_value(centre, *named[1:]) for named in mode.named_roots)
+
+
+def known_value(centre: Expression, rate: str | None, frequency: str | None) -> Side:
+    """Return a root that is a number by its names: one without a rate has that of the centre."""
+    middle = centre if rate is None else Name(rate)
+    return middle if frequency is None else Symbol("pair", parts=(middle, Name(frequency)))
 
 
 def _frequency(field: ParameterField, mode: Mode) -> Expression:
@@ -163,6 +172,14 @@ def _functions(field: ParameterField, case: Case, mode: Mode, time: str) -> Iter
         case "double":
             yield front
             yield product([power_of(t, mode.factor.index), front])
+        case "known roots":
+            for _, rate, frequency in mode.named_roots:
+                growth = front if rate is None else Call("exp", product([Name(rate), t]))
+                if frequency is None:
+                    yield growth
+                    continue
+                for kernel in KERNELS["circular"]:
+                    yield product([growth, Call(kernel, product([Name(frequency), t]))])
         case "decaying" | "real roots":
             for name in mode.names:
                 exponent = product([Name(name), t])

@@ -14,7 +14,7 @@ from closedform.notation.shown import FormulaColumn, FormulaMatrix
 from closedform.response.by_mode import ByMode
 from closedform.response.parametric.conditions import WrittenComparison
 from closedform.response.parametric.modes import Mode
-from closedform.response.parametric.quantities import RootDefinition
+from closedform.response.parametric.quantities import ResidueDefinition, RootDefinition
 from closedform.response.parametric.rewriting import Extent
 
 __all__ = ["Case", "Origin", "Sought", "WrittenQuantity"]
@@ -27,13 +27,15 @@ Origin = Literal["roots", "user", "trade"]
 class WrittenQuantity:
     """A name in the formulas of a case: a formula in parameters and names before it, or a root.
 
+    At roots that are known numbers `root` may be what a function has there.
+
     `origin` is "roots" for what the eigenvalues need, "user" for the model's abbreviations,
     "trade" for others.
     """
 
     name: str
     formula: Expression | None
-    root: RootDefinition | None
+    root: RootDefinition | ResidueDefinition | None
     origin: Origin
 
 

@@ -21,6 +21,7 @@ from closedform.notation.rational_formula import rational_formula, weighted_rati
 from closedform.notation.terms import negated, sum_of
 from closedform.response.parametric.quantities import (
     Definition,
+    ResidueDefinition,
     RootDefinition,
     SquareRoot,
     SumOfRoots,
@@ -43,7 +44,7 @@ def definition_formula(domain: ParameterDomain, definition: Definition) -> Expre
         case SumOfRoots(total, last, sign, rooted):
             inside = _root_of_quadratic(domain, total, last, sign)
             return Call("sqrt", inside) if rooted else inside
-        case RootDefinition():
+        case RootDefinition() | ResidueDefinition():
             return None
 
 

@@ -5,12 +5,14 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from fractions import Fraction
+from functools import lru_cache
 
-from flint import arb
+from flint import arb, ctx
 
-from closedform.algebra.enclosure import ball_of, certified_decimal
-from closedform.algebra.field import BaseField, Polynomial
+from closedform.algebra.enclosure import ball_of, certified_decimal, value_at
+from closedform.algebra.field import BaseField, Polynomial, Scalar
 from closedform.algebra.parameter_field import PI, ParameterField
+from closedform.algebra.parts import residue_value
 from closedform.algebra.roots import enclosed_roots
 from closedform.algebra.surds import SurdSum
 from closedform.algebra.value_field import element_at, value_field
@@ -28,7 +30,7 @@ from closedform.notation.expression import (
 )
 from closedform.notation.terms import square_root_of_surd
 from closedform.response.parametric.case import Case
-from closedform.response.parametric.quantities import RootDefinition
+from closedform.response.parametric.quantities import Part, ResidueDefinition, RootDefinition
 from closedform.response.sampling import surd_decimal
 
 __all__ = ["Known", "Root", "known_at"]
@@ -42,18 +44,22 @@ _ZERO, _ONE = SurdSum(()), SurdSum.rational(1)
 
 @dataclass(frozen=True)
 class Root:
-    """A real root of a polynomial in numbers; `which` counts by real, then imaginary part."""
+    """A part of a root of a polynomial in numbers; `which` counts by real, then imaginary part."""
 
     field: BaseField
     polynomial: Polynomial
     which: int
+    part: Part | None = None
 
     def ball(self) -> arb:
-        """Return a ball around the root at FLINT's current precision."""
-        return enclosed_roots(self.field, self.polynomial)[self.which - 1].real
+        """Return a ball around the number at FLINT's current precision."""
+        root = enclosed_roots(self.field, self.polynomial)[self.which - 1]
+        return root.imag if self.part == "imaginary" else root.real
 
     def exact(self) -> SurdSum | None:
-        """Return the root if it is a surd by a linear or quadratic factor, else None."""
+        """Return a real root if it is a surd by a linear or quadratic factor, else None."""
+        if self.part is not None:
+            return None
         ball = self.ball()
         for part, _ in self.polynomial.factor_list()[1]:
             for candidate in _surd_roots(self.field, part.monic()):
@@ -61,6 +67,36 @@ class Root:
                 if ball.overlaps(ball_of(candidate)):
                     return candidate
         return None
+
+
+@dataclass(frozen=True)
+class Residue:
+    """`weight` times a part of numerator/(p' beside) at a root of p, all in numbers."""
+
+    field: BaseField
+    polynomial: Polynomial
+    which: int
+    part: Part
+    numerator: Polynomial
+    weight: int
+    beside: Polynomial
+
+    def ball(self) -> arb:
+        """Return a ball around the number at FLINT's current precision."""
+        return _residue_ball(self, ctx.prec)
+
+    def exact(self) -> SurdSum | None:
+        """Return nothing: the number is known by its balls."""
+        return None
+
+
+@lru_cache(maxsize=1024)
+def _residue_ball(residue: Residue, _bits: int) -> arb:
+    field, p, which = residue.field, residue.polynomial, residue.which
+    value = residue_value(field, p, which, residue.numerator)
+    beside = [field.enclose(c) for c in residue.beside.to_list()]
+    value /= value_at(beside, enclosed_roots(field, p)[which - 1])
+    return residue.weight * (value.real if residue.part == "real" else value.imag)
 
 
 def _surd_roots(field: BaseField, p: Polynomial) -> list[SurdSum]:
@@ -89,7 +125,7 @@ class Known:
 
     exact: dict[str, SurdSum]
     squares: dict[str, SurdSum] = field(default_factory=dict)
-    definitions: dict[str, Expression | Root] = field(default_factory=dict)
+    definitions: dict[str, Expression | Root | Residue] = field(default_factory=dict)
 
     def balls(self) -> dict[str, arb]:
         """Return a ball for every name at FLINT's current precision."""
@@ -97,7 +133,9 @@ class Known:
         found |= {name: ball_of(value) for name, value in self.exact.items()}
         for name, definition in self.definitions.items():
             found[name] = (
-                definition.ball() if isinstance(definition, Root) else enclose(definition, found)
+                definition.ball()
+                if isinstance(definition, Root | Residue)
+                else enclose(definition, found)
             )
         return found
 
@@ -209,7 +247,7 @@ def known_at(field: ParameterField, case: Case, values: Mapping[str, SurdSum]) -
     for quantity in case.quantities:
         name, definition = quantity.name, quantity.formula
         if definition is not None:
-            found: Expression | Root = definition
+            found: Expression | Root | Residue = definition
             exact = known.value(definition)
             square = known.square(definition) if exact is None else None
             if square is not None:
@@ -225,10 +263,26 @@ def known_at(field: ParameterField, case: Case, values: Mapping[str, SurdSum]) -
 
 
 def _root_at(
-    field: ParameterField, root: RootDefinition | None, values: Mapping[str, SurdSum]
-) -> Root:
+    field: ParameterField,
+    root: RootDefinition | ResidueDefinition | None,
+    values: Mapping[str, SurdSum],
+) -> Root | Residue:
     if root is None:
         raise TypeError("a quantity without a formula is a root")
-    base = value_field(field, root.polynomial, values)
-    polynomial = base.polynomial([element_at(field, c, values, base) for c in root.polynomial])
-    return Root(base, polynomial, root.which)
+    above = root.numerator + root.beside if isinstance(root, ResidueDefinition) else ()
+    base = value_field(field, [*root.polynomial, *above], values)
+
+    def over(coefficients: tuple[Scalar, ...]) -> Polynomial:
+        return base.polynomial([element_at(field, c, values, base) for c in coefficients])
+
+    if isinstance(root, RootDefinition):
+        return Root(base, over(root.polynomial), root.which, root.part)
+    return Residue(
+        base,
+        over(root.polynomial),
+        root.which,
+        root.part,
+        over(root.numerator),
+        root.weight,
+        over(root.beside),
+    )

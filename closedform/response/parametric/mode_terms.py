@@ -22,6 +22,7 @@ from closedform.algebra.parameter_field import ParameterField
 from closedform.notation.expression import operations
 from closedform.notation.rational_formula import rational_formula
 from closedform.response.parametric.modes import NAMED_REAL, Mode, squares_of
+from closedform.response.parametric.residues import amount_of
 from closedform.response.parametric.terms import Kernel, Term
 
 __all__ = ["terms_of"]
@@ -143,6 +144,8 @@ def _terms(
                 Term(amount, 0, root, None, None),
                 *_pair_terms(r, sigma, omega, _over_difference(g, omega)),
             ]
+        case "known roots":
+            return _known_terms(field, writing, mode, entry)
         case "quartet":
             _, sigma, omega = names
             moved = [field.into(writing, c) for c in _moved(entry, roots.centre, 4)]
@@ -174,6 +177,24 @@ def _real_terms(
         differences = [root - other for j, other in enumerate(roots) if j != i]
         amount = sum_at(writing, r, root, differences)
         terms.append(Term(amount, 0, root, None, None))
+    return terms
+
+
+def _known_terms(
+    field: ParameterField, writing: ParameterField, mode: Mode, entry: Polynomial
+) -> list[Term]:
+    """The amounts are named numbers, times what is left of the parameters in the entry."""
+    centre = field.into(writing, mode.factor.roots.centre)
+    terms = []
+    for root, name, frequency in mode.named_roots:
+        rate = centre if name is None else writing.symbol(name)
+        even = amount_of(field, writing, mode, root, "real", entry)
+        if frequency is None:
+            terms.append(Term(even, 0, rate))
+            continue
+        odd = amount_of(field, writing, mode, root, "imaginary", entry)
+        omega = writing.symbol(frequency)
+        terms += [Term(even, 0, rate, "cos", omega), Term(odd, 0, rate, "sin", omega)]
     return terms
 
 

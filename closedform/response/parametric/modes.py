@@ -2,27 +2,38 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
-from functools import reduce
+from functools import cached_property, reduce
 from math import isqrt
 from operator import mul
 
 from closedform.algebra.field import Polynomial, Scalar
+from closedform.algebra.known_roots import KnownRoot
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import Regime
 from closedform.algebra.spectrum import Factor
 from closedform.response.parametric.quantities import (
     Letters,
+    Part,
     Quantity,
+    ResidueDefinition,
     RootDefinition,
     SquareRoot,
     SumOfRoots,
     Value,
 )
 
-__all__ = ["NAMED_REAL", "Mode", "modes_of", "perfect_root", "quantities_of", "squares_of"]
+__all__ = [
+    "NAMED_REAL",
+    "Mode",
+    "Residue",
+    "modes_of",
+    "perfect_root",
+    "quantities_of",
+    "squares_of",
+]
 
 NAMED_REAL = frozenset({"decaying", "real roots"})
 DECAYING = ("alpha", "beta", "gamma", "delta")
@@ -30,16 +41,55 @@ DECAYING = ("alpha", "beta", "gamma", "delta")
 
 
 @dataclass(frozen=True)
+class Residue:
+    """A part of numerator(lambda)/p'(lambda) at a known root; the name None is for zero.
+
+    The same number is stated as that part of above(lambda)/(p'(lambda) beside(lambda)).
+    """
+
+    which: int
+    part: Part
+    numerator: Polynomial
+    name: str | None
+    above: Polynomial
+    beside: Polynomial
+
+
+@dataclass(frozen=True)
 class Mode:
     """A factor in one regime, and the names of what belongs to its roots.
 
-    `frequency` is an element of K where sqrt(± D) is one, and needs no name.
+    `frequency` is an element of K where sqrt(± D) is one, and needs no name.  Known roots
+    have `residues`: the amounts with which they occur.
     """
 
     factor: Factor
     regime: Regime
     names: tuple[str, ...] = ()
     frequency: Scalar | None = None
+    residues: tuple[Residue, ...] = ()
+
+    @property
+    def written_names(self) -> tuple[str, ...]:
+        """All names that formulas use for this mode."""
+        return (*self.names, *(r.name for r in self.residues if r.name is not None))
+
+    @cached_property
+    def named_residues(self) -> dict[tuple[int, Part, Polynomial], str | None]:
+        """The name of each residue, by root, part and numerator."""
+        return {(r.which, r.part, r.numerator): r.name for r in self.residues}
+
+    @property
+    def named_roots(self) -> tuple[tuple[KnownRoot, str | None, str | None], ...]:
+        """The known roots, each with the name of its real part and that of its frequency.
+
+        None for a real part that is the mean of all roots, and for the frequency of a real root.
+        """
+        left = iter(self.names)
+        return tuple(
+            (root, None if root.centred else next(left), None if root.is_real else next(left))
+            for root in self.regime.roots
+        )
 
 
 def modes_of(
@@ -80,6 +130,8 @@ def _mode(
             return Mode(factor, regime, tuple(map(letters.take, ("rho", "sigma", "omega"))))
         case "root and pair":
             return Mode(factor, regime, tuple(map(letters.take, ("lambda", "sigma", "omega"))))
+        case "known roots":
+            return Mode(factor, regime, tuple(_names_of_known(regime, letters)))
         case _:
             return Mode(factor, regime)
 
@@ -93,6 +145,21 @@ def _stem(field: ParameterField, factor: Factor, regime: Regime) -> str:
     if regime.kind == "hyperbolic":
         return "kappa"
     return "omega_d" if factor.roots.centre else "omega_n"
+
+
+def _names_of_known(regime: Regime, letters: Letters) -> Iterator[str]:
+    """Lambda for real roots, alpha ± i omega for pairs, with numbers where there are several."""
+    numbers = {True: 0, False: 0}
+    for root in regime.roots:
+        numbers[root.is_real] += 1
+        alone = sum(r.is_real == root.is_real for r in regime.roots) == 1
+        number = None if alone else numbers[root.is_real]
+        if root.is_real:
+            yield letters.take("lambda", number)
+            continue
+        if not root.centred:
+            yield letters.take("alpha", number)
+        yield letters.take("omega", number)
 
 
 def _square(factor: Factor, regime: Regime) -> Scalar:
@@ -173,8 +240,36 @@ def quantities_of(field: ParameterField, writing: ParameterField, mode: Mode) ->
                 Quantity(sigma, Value(-(b + r) / writing.scalar(2)), positive=False),
                 Quantity(omega, SquareRoot(c + r * (b + r) - s**2)),
             ]
+        case "known roots":
+            return [*_known_roots(mode), *_known_residues(mode)]
         case _:
             return []
+
+
+def _known_roots(mode: Mode) -> Iterator[Quantity]:
+    polynomial = mode.factor.polynomial
+    for root, rate, frequency in mode.named_roots:
+        if rate is not None:
+            part: Part | None = None if root.is_real else "real"
+            yield Quantity(rate, RootDefinition(polynomial, root.which, part), positive=False)
+        if frequency is not None:
+            yield Quantity(frequency, RootDefinition(polynomial, root.which, "imaginary"))
+
+
+def _known_residues(mode: Mode) -> Iterator[Quantity]:
+    real = {root.which for root in mode.regime.roots if root.is_real}
+    for residue in mode.residues:
+        if residue.name is not None:
+            weight = 1 if residue.which in real else 2 if residue.part == "real" else -2
+            definition = ResidueDefinition(
+                mode.factor.polynomial,
+                residue.which,
+                residue.part,
+                tuple(residue.above.to_list()),
+                weight,
+                tuple(residue.beside.to_list()),
+            )
+            yield Quantity(residue.name, definition, positive=False)
 
 
 def squares_of(factor: Factor) -> Polynomial:

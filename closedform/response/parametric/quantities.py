@@ -8,11 +8,23 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
+from typing import Literal
 
 from closedform.algebra.field import Scalar
 from closedform.notation.latex.names import printed_key
 
-__all__ = ["Letters", "Quantity", "RootDefinition", "SquareRoot", "SumOfRoots", "Value"]
+__all__ = [
+    "Letters",
+    "Part",
+    "Quantity",
+    "ResidueDefinition",
+    "RootDefinition",
+    "SquareRoot",
+    "SumOfRoots",
+    "Value",
+]
+
+Part = Literal["real", "imaginary"]
 
 
 @dataclass(frozen=True)
@@ -47,14 +59,32 @@ class SumOfRoots:
 class RootDefinition:
     """A real root of a polynomial in the parameters, coefficients highest first.
 
-    `which` is its place among the roots, ordered by real, then imaginary part.
+    `which` is its place among the roots, ordered by real, then imaginary part.  With `part`,
+    for a polynomial in numbers, that part of a root that is not real.
     """
 
     polynomial: tuple[Scalar, ...]
     which: int
+    part: Part | None = None
 
 
-Definition = Value | SquareRoot | SumOfRoots | RootDefinition
+@dataclass(frozen=True)
+class ResidueDefinition:
+    """`weight` times a part of numerator(lambda)/(p'(lambda) g(lambda)) at a root of p.
+
+    The polynomials p, g = `beside` and the numerator are in numbers, coefficients highest first;
+    `which` as for roots.
+    """
+
+    polynomial: tuple[Scalar, ...]
+    which: int
+    part: Part
+    numerator: tuple[Scalar, ...]
+    weight: int
+    beside: tuple[Scalar, ...]
+
+
+Definition = Value | SquareRoot | SumOfRoots | RootDefinition | ResidueDefinition
 
 
 @dataclass(frozen=True)

@@ -13,6 +13,7 @@ from closedform.algebra.field import FieldMatrix
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import regimes_of
 from closedform.model.parametric import ParametricModel
+from closedform.notation.expression import names_in
 from closedform.notation.plain import plain
 from closedform.notation.rational_formula import rational_formula
 from closedform.notation.shown import cases_latex
@@ -22,9 +23,11 @@ from closedform.response.parametric.conditions import (
     written_comparison,
     written_equation,
 )
+from closedform.response.parametric.quantities import RootDefinition
 from closedform.response.parametric.writing import written_case
 
 __all__ = ["ParametricResponse", "respond_in_cases"]
+
 
 @dataclass(frozen=True, repr=False)
 class ParametricResponse:
@@ -71,7 +74,8 @@ class ParametricResponse:
             lines.append(f"if {case.condition}:" if case.conditions else "always:")
             for state, written in zip(self.model.states, case.solution, strict=True):
                 lines.append(f"  {state}({t}) = {plain(written)}")
-            lines += [f"  {self._defined(quantity)}" for quantity in case.quantities]
+            needed = _needed(case)
+            lines += [f"  {self._defined(q)}" for q in case.quantities if q.name in needed]
         return "\n".join(lines)
 
     def _defined(self, quantity: WrittenQuantity) -> str:
@@ -80,13 +84,34 @@ class ParametricResponse:
         if quantity.root is None:
             raise TypeError(f"{quantity.name} has no definition")
         field = self.model.field
-        texts = [plain(rational_formula(field, c)) for c in quantity.root.polynomial]
-        place = f"root {quantity.root.which}, by real part"
-        return f"{quantity.name} is {place}, of the coefficients {', '.join(texts)}"
+        root = quantity.root
+        texts = [plain(rational_formula(field, c)) for c in root.polynomial]
+        place = f"root {root.which}, by real part, of the coefficients {', '.join(texts)}"
+        if isinstance(root, RootDefinition):
+            of = "" if root.part is None else f"the {root.part} part of "
+            return f"{quantity.name} is {of}{place}"
+        above, beside = (
+            ", ".join(plain(rational_formula(field, c)) for c in row)
+            for row in (root.numerator, root.beside)
+        )
+        over, also = ("p'", "") if beside == "1" else ("(p' g)", f" and {beside} of g")
+        return (
+            f"{quantity.name} is {root.weight} times the {root.part} part of r/{over} at {place} "
+            f"of p, {above} of r{also}"
+        )
 
     def _repr_latex_(self) -> str:
         """Return the solution as LaTeX for a notebook, a row for each case."""
         return cases_latex([(c.solution, [k.latex for k in c.conditions]) for c in self.cases])
+
+
+def _needed(case: Case) -> frozenset[str]:
+    """The names in the solution of a case, and in the definitions of these."""
+    needed = frozenset().union(*map(names_in, (*case.solution, *case.outputs)))
+    for quantity in reversed(case.quantities):
+        if quantity.name in needed and quantity.formula is not None:
+            needed |= names_in(quantity.formula)
+    return needed
 
 
 def respond_in_cases(

@@ -26,11 +26,13 @@ from closedform.response.parametric.quantities import (
     Definition,
     Letters,
     Quantity,
+    ResidueDefinition,
     RootDefinition,
     SquareRoot,
     SumOfRoots,
     Value,
 )
+from closedform.response.parametric.residues import with_residues
 from closedform.response.parametric.rewriting import (
     Extent,
     Rewriting,
@@ -85,11 +87,12 @@ def written_case(
     conditions, domain = selected
     letters = Letters(_taken(model))
     modes = modes_of(field, branch.spectrum.factors, regimes, letters)
+    sought = (functions.state, functions.output, functions.further, functions.parted)
+    modes = with_residues(field, modes, sought, letters)
     shortenings = (*user_shortenings(model, branch), *trade_shortenings(domain, modes, letters))
     writing = _writing_field(model, modes, shortenings)
     quantities = [q for mode in modes for q in quantities_of(field, writing, mode)]
     lifted = _lifted(field, writing, domain, quantities, shortenings)
-    sought = (functions.state, functions.output, functions.further, functions.parted)
     terms = _functions(field, writing, modes, branch.exponential, sought)
     below = _names_below(writing, terms)
     rewritings = sound_rewritings(
@@ -165,7 +168,7 @@ def _writing_field(
     return ParameterField(
         parameters=(
             *(n for n in field.parameters if n in entries),
-            *(name for mode in modes for name in mode.names),
+            *(name for mode in modes for name in mode.written_names),
             *(s.name for s in shortenings),
             *(n for n in field.parameters if n not in entries),
         )
@@ -293,7 +296,7 @@ def _written_quantity(
     domain: ParameterDomain, quantity: Quantity, chosen: Sequence[Rewriting]
 ) -> WrittenQuantity:
     """Return a quantity with its definition in the shortest form that the abbreviations allow."""
-    if isinstance(quantity.definition, RootDefinition):
+    if isinstance(quantity.definition, RootDefinition | ResidueDefinition):
         return WrittenQuantity(quantity.name, None, quantity.definition, "roots")
     forms = [definition_formula(domain, quantity.definition)]
     forms += [

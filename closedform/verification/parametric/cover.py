@@ -17,6 +17,7 @@ from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.equations import linear_solution
 from closedform.algebra.exceptional import discriminant_of
 from closedform.algebra.field import Scalar
+from closedform.algebra.known_roots import has_known_roots
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.sample import PointValue, holds_at
 from closedform.errors import Place
@@ -133,6 +134,8 @@ def _must_not_vanish(field: ParameterField, branch: Branch) -> Iterator[Scalar]:
         for element in elements:
             yield from _factors(field, field.of_polynomial(element.denom))
         factor = term.factor
+        if has_known_roots(field, factor.p):
+            continue  # an irreducible polynomial in numbers: its roots are simple
         if factor.degree > 2 and factor.roots.form == "even" and factor.roots.squares is not None:
             yield from _factors(field, field.of_polynomial(factor.roots.squares.nth(0).numer))
         if factor.degree > 2 and (structure is None or structure.simple is None):

@@ -235,6 +235,9 @@ def facts_of_names(field: ParameterField, mode: Mode) -> Iterator[Comparison]:
                 yield from (Comparison(b - a, ">") for a, b in combinations(names, 2))
         case "root and pair":
             yield Comparison(names[2], ">")
+        case "known roots":
+            frequencies = (name for _, _, name in mode.named_roots if name is not None)
+            yield from (Comparison(field.symbol(name), ">") for name in frequencies)
         case _:
             pass
 

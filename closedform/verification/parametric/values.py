@@ -5,19 +5,21 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 from fractions import Fraction
+from functools import lru_cache
+from itertools import pairwise
 from typing import Any
 
 from flint import acb, acb_mat, acb_poly, arb, arb_mat, ctx
 
 from closedform.algebra.enclosure import ball_of
-from closedform.algebra.field import FieldMatrix
+from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.model.parametric import ParametricModel
 from closedform.notation import enclose, plain, read_formula
 from closedform.notation.expression import Expression
 from closedform.response.parametric.case import Case
 from closedform.response.parametric.points import Point
-from closedform.response.parametric.quantities import RootDefinition
+from closedform.response.parametric.quantities import ResidueDefinition, RootDefinition
 
 __all__ = ["NamesAt", "enclosed_matrix", "exponential_at", "read_back", "trial_times"]
 
@@ -47,8 +49,71 @@ class NamesAt:
                     formula = read_back(self.model, self.case, quantity.formula)
                     known[quantity.name] = enclose(formula, known)
                 elif quantity.root is not None:
-                    known[quantity.name] = _root(self.model.field, quantity.root, self.point)
+                    known[quantity.name] = self._root(quantity.root)
         return known
+
+    def _root(self, root: RootDefinition | ResidueDefinition) -> arb:
+        field = self.model.field
+        if isinstance(root, ResidueDefinition) or root.part is not None:
+            return _number(field, root)
+        return _root(field, root, self.point)
+
+
+def _number(field: ParameterField, root: RootDefinition | ResidueDefinition) -> arb:
+    """A part of a root of a polynomial in numbers, or of r/p' there; `weight` times it."""
+    roots = _roots_in_order(field, root.polynomial, ctx.prec)
+    if roots is None or not 1 <= root.which <= len(roots):
+        return arb("nan")
+    value, weight = roots[root.which - 1], 1
+    if isinstance(root, ResidueDefinition):
+        above, p, beside = (
+            _over_balls(field, c) for c in (root.numerator, root.polynomial, root.beside)
+        )
+        value, weight = above(value) / (p.derivative()(value) * beside(value)), root.weight
+    return weight * (value.real if root.part == "real" else value.imag)
+
+
+def _over_balls(field: ParameterField, coefficients: tuple[Scalar, ...]) -> acb_poly:
+    return acb_poly([field.enclose_at(c, {}) for c in reversed(coefficients)])
+
+
+@lru_cache(maxsize=64)
+def _roots_in_order(
+    field: ParameterField, polynomial: tuple[Scalar, ...], bits: int
+) -> list[acb] | None:
+    """The roots by real part, then imaginary part, at that precision or a finer one.
+
+    Real parts count as equal where the finest precision does not tell them apart.
+    """
+    most = max(bits, _MOST_BITS)
+    while bits <= most:
+        with ctx.workprec(bits):
+            roots = _isolated(_over_balls(field, polynomial))
+            ordered = None if roots is None else _ordered(roots, last=2 * bits > most)
+        if ordered is not None:
+            return ordered
+        bits *= 2
+    return None
+
+
+def _ordered(roots: list[acb], *, last: bool) -> list[acb] | None:
+    """Roots in their order, None where it is not told at this precision."""
+    groups: list[list[acb]] = []
+    for root in sorted(roots, key=lambda z: z.real.mid()):
+        if groups and any(z.real.overlaps(root.real) for z in groups[-1]):
+            groups[-1].append(root)
+        else:
+            groups.append([root])
+    found = []
+    for group in groups:
+        pair = len(group) == 2 and group[0].overlaps(group[1].conjugate())
+        if len(group) > 1 and not pair and not last:
+            return None
+        group.sort(key=lambda z: z.imag.mid())
+        if any(a.imag.overlaps(b.imag) for a, b in pairwise(group)):
+            return None
+        found += group
+    return found
 
 
 def _root(field: ParameterField, root: RootDefinition, point: Point) -> arb:

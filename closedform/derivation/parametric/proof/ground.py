@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
+from itertools import pairwise
 from typing import Any, Protocol
 
 from flint import acb, acb_mat, acb_poly, arb, arb_mat, ctx
@@ -98,13 +99,21 @@ def variable_of(said: Said) -> Name:
 
 @dataclass(frozen=True)
 class Defined:
-    """A name with its definition in print: a formula, or a zero of a polynomial in one name."""
+    """A name with its definition in print: a formula, or a zero of a polynomial in one name.
+
+    Of a zero it may be a part, or `weight` times a part of numerator/p' there; with `whole` p is
+    not the polynomial with this zero, but the characteristic one.
+    """
 
     name: str
     formula: Expression
     cases: tuple[int, ...]
     place: int | None = None
     turned: bool = False
+    part: str = ""
+    numerator: Expression | None = None
+    weight: int = 1
+    whole: bool = False
 
 
 def defined_in(steps: Sequence[Step], count: int) -> Iterator[Defined]:
@@ -115,6 +124,25 @@ def defined_in(steps: Sequence[Step], count: int) -> Iterator[Defined]:
             for name, place in zip(s.row["names"], s.row["places"], strict=True):
                 first = _formula(s.statement.sides[0])
                 yield Defined(name.text, first, s.cases, place, bool(s.row["turned"]))
+        elif s.statement.says == "known zeros":
+            first = _formula(s.statement.sides[0])
+            for line in s.row["table"]:
+                name, place = line["name"].text, line["place"]
+                yield Defined(name, first, s.cases, place, part=line["part"])
+        elif s.statement.says == "amount":
+            numerator = _formula(s.statement.sides[-1])
+            first = _formula(s.row["polynomial"].sides[0])
+            for line in s.row["constants"]:
+                yield Defined(
+                    line["name"].text,
+                    first,
+                    s.cases,
+                    s.row["place"],
+                    part=line["part"],
+                    numerator=numerator,
+                    weight=line["weight"],
+                    whole=s.row["whole"],
+                )
     for s in said:
         left = s.statement.sides[0]
         if s.statement.says in ("definition", "abbreviation", "restated"):
@@ -162,7 +190,8 @@ class Ground:
             if defined.place is None:
                 found[defined.name] = ball_at(defined.formula, found)
             else:
-                found[defined.name] = _zero(defined, found)
+                whole = self.characteristic if defined.whole else None
+                found[defined.name] = _zero(defined, found, whole)
         return found
 
     @cached_property
@@ -265,8 +294,40 @@ def zeros_of(polynomial: acb_poly) -> list[acb] | None:
     return found if apart else None
 
 
-def _zero(defined: Defined, names: Mapping[str, Any]) -> acb:
+def _part(defined: Defined, names: Mapping[str, Any], whole: acb_poly | None) -> acb:
+    """A part of the zero at a place, by real and then imaginary part, or of numerator/p' there."""
+    variable = unknown_in(defined.formula, names)
+    polynomial = coefficients_at(defined.formula, variable, names)
+    zeros = _in_order(zeros_of(polynomial) or [])
+    if zeros is None or defined.place is None or len(zeros) < defined.place:
+        return acb("nan")
+    value = zeros[defined.place - 1]
+    if defined.numerator is not None:
+        above = ball_at(defined.numerator, {**names, variable: value})
+        slope = (polynomial if whole is None else whole).derivative()
+        value = above / slope(value)
+    return acb(defined.weight * (value.real if defined.part == "real" else value.imag))
+
+
+def _in_order(zeros: list[acb]) -> list[acb] | None:
+    """Zeros that are sorted by real part, those of one real part by imaginary part."""
+    groups: list[list[acb]] = []
+    for zero in zeros:
+        if groups and any(z.real.overlaps(zero.real) for z in groups[-1]):
+            groups[-1].append(zero)
+        else:
+            groups.append([zero])
+    for group in groups:
+        group.sort(key=lambda z: z.imag.mid())
+        if any(a.imag.overlaps(b.imag) for a, b in pairwise(group)):
+            return None
+    return [zero for group in groups for zero in group]
+
+
+def _zero(defined: Defined, names: Mapping[str, Any], whole: acb_poly | None) -> acb:
     """The real zero at a place, counted by real part; not finite where it is not told apart."""
+    if defined.part:
+        return _part(defined, names, whole)
     zeros = zeros_of(coefficients_at(defined.formula, unknown_in(defined.formula, names), names))
     for zero in zeros or ():
         if not zero.imag.contains(0):

@@ -21,6 +21,8 @@ from closedform.derivation.proof.finding import (
     Fault,
     Finding,
     agreeing,
+    decimal_of,
+    number_in,
     undecided,
     whether,
 )
@@ -28,12 +30,14 @@ from closedform.derivation.step import Side, Symbol
 from closedform.notation.expression import ZERO, Name
 
 __all__ = [
+    "amount",
     "block_of_square",
     "case_row",
     "definition",
     "divisor",
     "eigenvalue",
     "factor_row",
+    "known_zeros",
     "named_zeros",
     "polynomial",
     "product_of_entries",
@@ -125,6 +129,27 @@ def named_zeros(ground: Ground, said: Said) -> Iterator[Finding]:
     for k, value in enumerate(values):
         if any(value.overlaps(other) for other in values[:k]):
             yield undecided(f"{names[k]} of case {ground.case.number + 1}")
+
+
+def known_zeros(ground: Ground, said: Said) -> Iterator[Finding]:
+    """A polynomial in numbers, the parts of its zeros by name, with intervals and decimals."""
+    yield from _equals_zero(said)
+    for line in said.row["table"]:
+        value, place = acb(ground.names[line["name"].text]), line["name"].text
+        if not value.is_finite():
+            yield undecided(f"{place} of case {ground.case.number + 1}")
+            return
+        low, high = map(number_in, line["interval"])
+        inside = bool(low <= value.real) and bool(value.real <= high)
+        yield from whether(inside, place, "it is not in its interval")
+        yield decimal_of(place, line["decimal"], value, said.row["digits"])
+
+
+def amount(ground: Ground, said: Said) -> Iterator[Finding]:
+    """Constants that are parts of r/p' at a zero of p: their decimals."""
+    for line in said.row["constants"]:
+        value, place = acb(ground.names[line["name"].text]), line["name"].text
+        yield decimal_of(place, line["decimal"], value, said.row["digits"])
 
 
 def square(ground: Ground, said: Said) -> Iterator[Finding]:
