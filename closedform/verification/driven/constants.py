@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 from fractions import Fraction
 
 from flint import arb
@@ -23,7 +24,7 @@ def settled_constant(field: BaseField, constant: Constant) -> tuple[tuple[Scalar
     of pi is folded into the first quarter.
     """
     one, zero = field.domain.one, field.domain.zero
-    bare = Constant(constant.growth, "one", zero)
+    bare = replace(constant, kernel="one", angle=zero)
     if constant.kernel == "one":
         return ((one, bare),)
     if not constant.angle:
@@ -33,7 +34,7 @@ def settled_constant(field: BaseField, constant: Constant) -> tuple[tuple[Scalar
         return _folded(field, constant, turns)
     if _leads_with_minus(field, constant.angle):
         weight = one if constant.kernel == "cos" else -one
-        return ((weight, Constant(constant.growth, constant.kernel, -constant.angle)),)
+        return ((weight, replace(constant, angle=-constant.angle)),)
     return ((one, constant),)
 
 
@@ -64,7 +65,7 @@ def _folded(
     if turns > _HALF:
         turns = 1 - turns
         sign = -sign if constant.kernel == "cos" else sign
-    bare = Constant(constant.growth, "one", field.domain.zero)
+    bare = replace(constant, kernel="one", angle=field.domain.zero)
     opposite = turns if constant.kernel == "sin" else _HALF - turns
     exact = {Fraction(0): Fraction(0), Fraction(1, 6): _HALF, _HALF: Fraction(1)}.get(opposite)
     if exact is not None:
@@ -72,7 +73,7 @@ def _folded(
     if not isinstance(field, ParameterField):
         raise TypeError("only a field with pi has angles in turns")
     angle = field.symbol(PI) * field.scalar(turns)
-    return ((field.scalar(sign), Constant(constant.growth, constant.kernel, angle)),)
+    return ((field.scalar(sign), replace(constant, angle=angle)),)
 
 
 def _leads_with_minus(field: BaseField, angle: Scalar) -> bool:

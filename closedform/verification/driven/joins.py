@@ -7,6 +7,7 @@ It is zero if the columns of equal numbers add up to zero; if they do not, balls
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from dataclasses import replace
 from math import factorial
 
 from flint import ctx
@@ -165,8 +166,7 @@ def _value(
         total = total + residue.scaled(setting.field.polynomial([weight]))
     if p.degree() == 1:
         growth = constant.growth - p.nth(0) * s
-        moved = Constant(growth, constant.kernel, constant.angle)
-        return [(moved, total.coefficients[0])]
+        return [(replace(constant, growth=growth), total.coefficients[0])]
     frequency = _frequency(setting, p)
     if frequency is None or constant.kernel != "one":
         return None
@@ -174,7 +174,10 @@ def _value(
     low, high = total.coefficients
     growth, angle = constant.growth + centre * s, frequency * s
     sine = (low + high * centre) * (setting.field.domain.one / frequency)
-    return [(Constant(growth, "cos", angle), high), (Constant(growth, "sin", angle), sine)]
+    return [
+        (replace(constant, growth=growth, kernel="cos", angle=angle), high),
+        (replace(constant, growth=growth, kernel="sin", angle=angle), sine),
+    ]
 
 
 def _frequency(setting: Setting, p: Polynomial) -> Scalar | None:
