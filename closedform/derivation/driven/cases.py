@@ -6,27 +6,18 @@ from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import replace
 from typing import Any
 
-from closedform.derivation.driven.closing_steps import (
-    resonance_step,
-    stability_step,
-    steady_step,
-    transient_step,
-)
+from closedform.derivation.driven.closing_steps import resonance_step
 from closedform.derivation.driven.generator_steps import generator_step
 from closedform.derivation.driven.model_steps import driven_model_step
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.statements import Made, prove_driven_statements
 from closedform.derivation.driven.renaming import of_the_stacked
+from closedform.derivation.driven.results import driven_steps
 from closedform.derivation.driven.solution_steps import (
     case_facts,
-    driven_solution_step,
     driven_transition_step,
-    jumps_step,
-    particular_step,
-    split_step,
 )
 from closedform.derivation.driven.state_steps import state_form_step
-from closedform.derivation.driven.substitution_steps import substitution_step
 from closedform.derivation.driven.values_steps import driven_numbers_step
 from closedform.derivation.driven.verification_step import driven_cases_step
 from closedform.derivation.driven.writing import Writing
@@ -175,15 +166,10 @@ def _results(
             driven_transition_step(writing, own, facts, "resolvent")
             for own, (_, facts) in zip(rows, told, strict=True)
         ],
-        [particular_step(writing, *pair) for pair in told],
-        [jumps_step(writing, *pair) for pair in told],
-        [driven_solution_step(writing, *pair) for pair in told],
-        _some(split_step(writing, *pair) for pair in told),
-        _generic([stability_step(writing, *pair) for pair in told]),
-        _some(steady_step(writing, *pair) for pair in told),
-        _some(transient_step(writing, *pair) for pair in told),
-        _first(_some(substitution_step(response, *pair) for pair in told)),
     ]
+    found = [driven_steps(response, *pair) for pair in told]
+    kinds = list(dict.fromkeys(step.kind for steps in found for step in steps))
+    made += [_printed([s for steps in found for s in steps if s.kind == kind]) for kind in kinds]
     if solutions[0].resonances and solutions[0].case is not None:
         yield from _alike(_some(resonance_step(writing, *pair) for pair in told), len(solutions))
     for steps in made:
@@ -217,14 +203,18 @@ def _size(step: Step) -> int:
     return sum(operations(entry) for m in matrices for row in m.rows for entry in row)
 
 
-def _first(steps: Sequence[Step]) -> list[Step]:
-    """The steps, of which only that of the first case of all is printed in a working document."""
-    return [s if 0 in _tuple(s.facts["cases"]) else replace(s, depth="full") for s in steps]
+def _printed(steps: Sequence[Step]) -> list[Step]:
+    """The steps of one kind, with those in full documents only that tell little more.
 
+    That is stability where parameters are tied, and substitution but in the first case.
+    """
 
-def _generic(steps: Sequence[Step]) -> list[Step]:
-    """The steps, printed in a working document where no equation of parameters is asked for."""
-    return [s if s.facts["generic"] else replace(s, depth="full") for s in steps]
+    def shown(step: Step) -> bool:
+        if step.kind == "stability":
+            return bool(step.facts["generic"])
+        return step.kind != "substitution" or 0 in _tuple(step.facts["cases"])
+
+    return [step if shown(step) else replace(step, depth="full") for step in steps]
 
 
 def _some(steps: Iterable[Step | None]) -> list[Step]:

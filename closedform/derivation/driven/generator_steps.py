@@ -97,7 +97,7 @@ def _start_rows(writing: Writing, generator: Generator, place: int) -> Iterator[
     model = writing.model
     size, first = generator.orders[place], generator.first[place]
     several = sum(order > 0 for order in generator.orders) > 1
-    for burst in model.inputs[place].signal.bursts:
+    for number, burst in enumerate(model.inputs[place].signal.bursts):
         bounds = [None if at is None else writing.element(at) for at in (burst.start, burst.end)]
         origins = dict.fromkeys(_origin(writing, w, burst.start) for w in burst.waves)
         for origin in origins:
@@ -114,6 +114,7 @@ def _start_rows(writing: Writing, generator: Generator, place: int) -> Iterator[
                     "generator start", (symbol, writing.column(map(writing.element, totals)))
                 ),
                 "input": place,
+                "burst": number,
                 "waves": Statement("waves", (writing.inputs[place], waves_formula(writing, waves))),
             }
 

@@ -50,7 +50,7 @@ def driven_model_step(writing: Writing) -> Step:
         "form": "equations" if model.balances and model.form != "second order" else model.form,
         "unknowns": [Name(name) for name in model.unknowns],
         "states": [Name(name) for name in model.names],
-        "inputs": [_told(given) for _, given in declared],
+        "inputs": [_told(writing, given) for _, given in declared],
         "as_typed": any(_has_steps(side) for s in statements for side in s.sides),
         "numbers": model.domain is None,
         "impulses": any(given.signal.impulses for given in model.inputs),
@@ -66,7 +66,7 @@ def _has_steps(side: Side) -> bool:
     return any("step" in calls_in(formula) for formula in expressions_in(side))
 
 
-def _told(given: Input) -> dict[str, object]:
+def _told(writing: Writing, given: Input) -> dict[str, object]:
     repeat = given.signal.repeat
     return {
         "name": Name(given.name) if given.name else None,
@@ -74,6 +74,7 @@ def _told(given: Input) -> dict[str, object]:
         "unit": given.unit,
         "count": None if repeat is None else repeat.count,
         "repeats": repeat is not None,
+        "period": None if repeat is None else writing.element(repeat.period),
     }
 
 

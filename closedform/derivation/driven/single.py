@@ -10,27 +10,18 @@ from flint import acb
 
 from closedform.derivation.abbreviations import abbreviations_step
 from closedform.derivation.canonical_steps import canonical_steps
-from closedform.derivation.driven.closing_steps import (
-    resonance_step,
-    stability_step,
-    steady_step,
-    transient_step,
-)
+from closedform.derivation.driven.closing_steps import resonance_step
 from closedform.derivation.driven.generator_steps import generator_step
 from closedform.derivation.driven.model_steps import driven_model_step
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.statements import prove_driven_statements
 from closedform.derivation.driven.renaming import of_the_stacked
+from closedform.derivation.driven.results import driven_steps
 from closedform.derivation.driven.solution_steps import (
     case_facts,
-    driven_solution_step,
     driven_transition_step,
-    jumps_step,
-    particular_step,
-    split_step,
 )
 from closedform.derivation.driven.state_steps import state_form_step
-from closedform.derivation.driven.substitution_steps import substitution_step
 from closedform.derivation.driven.values_steps import driven_values_step
 from closedform.derivation.driven.verification_step import driven_verification_step
 from closedform.derivation.driven.writing import Writing, calls_in
@@ -73,19 +64,7 @@ def in_numbers(
     if forms.transition and not forms.names_amounts:
         route = "form" if stacked.has_chains_in_print else "resolvent"
         results.append(driven_transition_step(writing, forms.transition, facts, route))
-    results += [
-        particular_step(writing, solution, facts),
-        jumps_step(writing, solution, facts),
-        driven_solution_step(writing, solution, facts),
-    ]
-    more = (
-        split_step(writing, solution, facts),
-        stability_step(writing, solution, facts),
-        steady_step(writing, solution, facts),
-        transient_step(writing, solution, facts),
-        substitution_step(response, solution, facts),
-    )
-    results += [step for step in more if step is not None]
+    results += driven_steps(response, solution, facts)
     abbreviations = abbreviations_step(stacked, names_printed([*inner, *results]), digits)
     inner += [] if abbreviations is None else [abbreviations]
     values = driven_values_step(writing, solution, facts, digits)

@@ -145,7 +145,12 @@ def jumps_step(writing: Writing, solution: DrivenSolution, facts: dict[str, obje
                 "statement": Statement("jump", (writing.jump("h", k), vector)),
             }
         )
-    told = {**facts, "rows": rows, "driven": any(p.summands for p in functions.sustained)}
+    told = {
+        **facts,
+        "rows": rows,
+        "driven": any(p.summands for p in functions.sustained),
+        "apart": bool(solution.periodic),
+    }
     shape = _shape(writing, solution, rows)
     return Step("jumps", (shape,), told, ("particular",))
 

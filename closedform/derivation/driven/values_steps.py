@@ -89,7 +89,9 @@ def _set(
             {"name": Name(q.name), "decimal": q.decimal, "exact": q.exact is not None}
             for q in numbers.quantities
         ],
-        "formulas": [_in_numbers(writing, numbers, k, name) for k, name in enumerate(shown)],
+        "formulas": []
+        if any(given.signal.repeat for given in response.model.inputs)
+        else [_in_numbers(writing, numbers, k, name) for k, name in enumerate(shown)],
         "rows": [
             [exact_number(time), *row]
             for time, row in zip(numbers.times, numbers.rows, strict=True)

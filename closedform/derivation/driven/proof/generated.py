@@ -63,6 +63,31 @@ def input_statement(spot: Spot, said: Said) -> Iterator[Finding]:
     for k, given in columns:
         if given.signal.repeat is None:
             yield from _input_values(spot, k, given, right, of_name=bool(name))
+        elif name and given.formula == Name(name):
+            yield from _first_period(spot, given, right)
+
+
+def _first_period(spot: Spot, given: Input, side: Side) -> Iterator[Finding]:
+    """The printed period of an input that repeats, against its waves."""
+    repeat = given.signal.repeat
+    if repeat is None:
+        return
+    first, length = spot.element(repeat.start), spot.element(repeat.period)
+    for share in (1, 4, 8, 13):
+        t = first + length * share / 16
+        names = {**spot.names, spot.model.time: t}
+        expected = acb(0)
+        for burst in given.signal.bursts:
+            low = first if burst.start is None else spot.element(burst.start)
+            high = first + length if burst.end is None else spot.element(burst.end)
+            if not bool(t.real < low.real) and bool(t.real < high.real):
+                expected += sum((spot.wave_at(wave, t) for wave in burst.waves), acb(0))
+        try:
+            value = side_at(side, names, names)
+        except NoPieceError as wrong:
+            yield Fault("input", str(wrong))
+            return
+        yield equal(f"input {given.name}", value, expected)
 
 
 def _input_values(
@@ -208,39 +233,18 @@ def generator_start(spot: Spot, said: Said) -> Iterator[Finding]:
 
 def waves(spot: Spot, said: Said) -> Iterator[Finding]:
     """What an input is while a burst is on: its waves of one origin, and others apart."""
+    column, number = said.row["input"], said.row["burst"]
     label = said.statement.sides[0]
-    column = said.row["input"]
     yield from whether(label == Writing(spot.model).inputs[column], "waves", "of another input")
-    rows = [r for r in said.step.facts["starts"] if r["when"] == said.row["when"]]  # type: ignore[attr-defined]
-    rows = [r for r in rows if r["input"] == column]
-    when = said.row["when"]
-    for place in spot.places:
-        t = spot.times(place)[0]
+    held: Any = said.step.facts["starts"]
+    rows = [r for r in held if (r["input"], r["burst"]) == (column, number)]
+    burst = spot.model.inputs[column].signal.bursts[number]
+    for k in range(2):
+        t = spot.instants[0] + acb(3 * k + 1) / 7
         names = {**spot.names, spot.model.time: t}
-        if when is not None:
-            cases = Symbol("cases", parts=(Name(spot.model.time), when))
-            try:
-                side_at(cases, names, names)
-            except NoPieceError:
-                continue
         total = sum((ball_at(formula_of(r["waves"].sides[1]), names) for r in rows), acb(0))
-        if not _overlapping(spot, column):
-            yield equal("waves", total, spot.input_series(column, place, t)[0])
-
-
-def _overlapping(spot: Spot, column: int) -> bool:
-    """Whether several bursts of an input may be on together."""
-    return any(
-        len({b for b in spot.model.inputs[column].signal.bursts if _is_on(spot, b, k)}) > 1
-        for k in spot.places
-    )
-
-
-def _is_on(spot: Spot, burst: Any, place: int) -> bool:
-    order = {at: k for k, at in enumerate((spot.model.start, *spot.model.timeline))}
-    first = 0 if burst.start is None else order[burst.start]
-    last = len(order) if burst.end is None else order[burst.end]
-    return first <= place < last
+        expected = sum((spot.wave_at(wave, t) for wave in burst.waves), acb(0))
+        yield equal("waves", total, expected)
 
 
 def tone(spot: Spot, said: Said) -> Iterator[Finding]:

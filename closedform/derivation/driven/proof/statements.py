@@ -15,7 +15,7 @@ from typing import Any
 
 from flint import ctx
 
-from closedform.derivation.driven.proof import closing, generated, motion, stated, tables
+from closedform.derivation.driven.proof import closing, generated, motion, periods, stated, tables
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import Said, said_in
@@ -23,7 +23,7 @@ from closedform.derivation.proof.evaluation import expressions_in
 from closedform.derivation.proof.finding import Comparison, Fault, Finding, StatementRefutedError
 from closedform.derivation.step import Step
 from closedform.model.driven.model import DrivenModel
-from closedform.notation.expression import names_in
+from closedform.notation.expression import Name, names_in
 from closedform.notation.jets import jet_of
 from closedform.verification.record import Check, UnprovedError
 
@@ -102,6 +102,15 @@ PROVERS: dict[str, Prover] = {
     "by amplitude": closing.by_amplitude,
     "phase": closing.phase,
     "gain": closing.gain,
+    "period": periods.period,
+    "local time": periods.local_time,
+    "one period": periods.one_period,
+    "carried": periods.carried,
+    "steady start": periods.steady_start,
+    "in period": periods.in_period,
+    "steady period": periods.steady_period,
+    "after the periods": periods.after,
+    "divisor": periods.divisor,
     "given value": within,
     "in numbers": within,
 }
@@ -216,6 +225,9 @@ def _undefined(model: DrivenModel, spot: Spot, said: Said) -> Iterator[Fault]:
     known = {model.time, *spot.names}
     if said.step.kind == "stability":
         known.add(Writing(model).root.text)
+    if said.step.kind == "periodic":
+        number, local = said.step.facts["number"], said.step.facts["local"]
+        known |= {name for item in (number, local) for name in _own_names(item)}
     own = {*model.rows, *model.unknowns, *(i.name for i in model.inputs)}
     for side in said.statement.sides:
         for formula in expressions_in(side):
@@ -223,6 +235,14 @@ def _undefined(model: DrivenModel, spot: Spot, said: Said) -> Iterator[Fault]:
                 of_model = jet_of(name)[0] in own or _is_label(model, name)
                 if name not in known and not (said.step.kind in _OF_THE_MODEL and of_model):
                     yield Fault(said.statement.says, f"{name} is used and not defined")
+
+
+def _own_names(item: Any) -> Iterator[str]:
+    """The names that a step gives to the number of a period and to the time in it."""
+    if isinstance(item, Name):
+        yield item.text
+    else:
+        yield from _own_names(item.sides[0])
 
 
 def _is_label(model: DrivenModel, name: str) -> bool:

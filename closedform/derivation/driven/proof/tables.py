@@ -48,7 +48,7 @@ def _table(spot: Spot, step: Step, held: Mapping[str, Any]) -> Iterator[Finding]
         exact = exact_at(formula_of(read_formula(text, names=frozenset())), {})
         t = acb(ball_of(exact))
         yield from whether(not bool(t.real < spot.instants[0].real), text, "it is before the start")
-        expected = spot.rows_at(spot.place_at(t), t)
+        expected = spot.total_at(t)
         scale = spot.size_at(t)
         for name, value, true in zip(names, values, expected, strict=True):
             yield decimal_of(f"value of {name} at {text}", value, true, digits, scale)

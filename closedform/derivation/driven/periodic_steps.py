@@ -1,0 +1,86 @@
+"""The step that adds up what the periods of a repeating input leave."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from closedform.derivation.driven.writing import Writing
+from closedform.derivation.step import Statement, Step, Symbol
+from closedform.notation.expression import ONE, ZERO, Expression, Name, Sum, product
+from closedform.notation.terms import negated, sum_of
+from closedform.response.driven.period_formulas import PeriodicSolution, PeriodStretch
+from closedform.response.driven.solution import DrivenSolution
+
+__all__ = ["periodic_steps"]
+
+
+def periodic_steps(
+    writing: Writing, solution: DrivenSolution, facts: dict[str, object]
+) -> Iterator[Step]:
+    """State, for inputs that repeat, the response in the n-th period, and what it tends to."""
+    base = any(part.summands for part in solution.functions.intervals)
+    for place, own in enumerate(solution.periodic):
+        told = {
+            **facts,
+            "place": place,
+            "count": own.count,
+            "period": Statement("period", (own.period,)),
+            "local": _local(writing, own),
+            "number": Name(own.number),
+            "left": _states(writing, own, own.left, "one period"),
+            "carried": _states(writing, own, own.carried, "carried"),
+            "begins": None
+            if own.begins is None
+            else _states(writing, own, own.begins, "steady start"),
+            "stretches": [_stretch(writing, own, s, "in period") for s in own.stretches],
+            "steady": [_stretch(writing, own, s, "steady period") for s in own.steady or ()],
+            "after": None
+            if own.after is None
+            else [
+                Statement("after the periods", (_function(writing, name), formula))
+                for name, formula in zip(writing.model.rows, own.after, strict=True)
+            ],
+            "provided": [Statement("divisor", (formula,)) for formula in own.provided],
+            "base": base,
+            "inputs": [
+                label
+                for label, given in zip(writing.inputs, writing.model.inputs, strict=True)
+                if given.signal.repeat is not None
+            ],
+        }
+        yield Step("periodic", (), told, ("driven_transition",), "summary")
+
+
+def _function(writing: Writing, name: str) -> Symbol:
+    return Symbol("scalar", ("rep",), writing.t, name)
+
+
+def _local(writing: Writing, own: PeriodicSolution) -> Statement:
+    """The local time: t less the start of the n-th period."""
+    periods = sum_of([Name(own.number), negated(ONE)])
+    begun = [] if own.start == ZERO else [negated(own.start)]
+    whole = periods if own.period == ONE else product([own.period, periods])
+    return Statement("local time", (Name(own.local), Sum((writing.t, *begun, negated(whole)))))
+
+
+def _states(
+    writing: Writing, own: PeriodicSolution, formulas: tuple[Expression, ...], says: str
+) -> Statement:
+    """The states at the end of one period, of the n-th, and of the steady one."""
+    index = {"one period": "1", "carried": own.number, "steady start": "s"}[says]
+    left = Symbol("scalar" if writing.is_scalar else "vector", (index,), None, "g")
+    return Statement(says, (left, writing.column(formulas)))
+
+
+def _stretch(
+    writing: Writing, own: PeriodicSolution, stretch: PeriodStretch, says: str
+) -> dict[str, object]:
+    local = Name(own.local)
+    when = Symbol("interval", ("both",), local, parts=(stretch.start, stretch.end))
+    return {
+        "when": when,
+        "statements": [
+            Statement(says, (_function(writing, name), formula))
+            for name, formula in zip(writing.model.rows, stretch.rows, strict=True)
+        ],
+    }
