@@ -250,7 +250,8 @@ class _Writer:
 
     def _of(self, blow: Blow, part: ModePart, shift: Scalar, count: Count) -> Struck:
         constant = constant_formula(self.field, blow.constant)
-        return Struck(part, constant, shift, count, self.guards.meeting(part) == "always")
+        meets = self.guards.meeting(part) == "always"
+        return Struck(part, constant, shift, count, resonant=meets)
 
     def provided(self) -> tuple[Expression, ...]:
         """Divisors of pairs that may meet the period."""

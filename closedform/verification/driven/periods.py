@@ -35,7 +35,7 @@ from closedform.verification.driven.stepping import Steps
 from closedform.verification.driven.sums import Enclose, TimedSum
 from closedform.verification.record import Check
 
-__all__ = ["blow_check", "period_formula_check", "period_settings"]
+__all__ = ["Periods", "blow_check", "period_formula_check", "period_settings"]
 
 
 def period_settings(
@@ -132,8 +132,8 @@ def blow_check(setting: Setting, functions: PeriodFunctions) -> Check:
 
 
 @dataclass
-class _Periods:
-    """The response from rest over many periods, in balls."""
+class Periods:
+    """The response from rest over many periods, in balls, one after the other."""
 
     setting: Setting
     ground: Ground
@@ -204,7 +204,7 @@ def period_formula_check(setting: Setting, written: PeriodicSolution) -> Check:
     except FormulaError as error:  # its text is longer or deeper than what is read
         return Check(item, "not attempted", f"a formula was not read back: {error}")
     findings = (
-        _finding(setting, written, _Periods(setting, ground), asked, part)
+        _finding(setting, written, Periods(setting, ground), asked, part)
         for ground in setting.grounds
         for part in range(2)
     )
@@ -242,7 +242,7 @@ def _asked(
 def _finding(
     setting: Setting,
     written: PeriodicSolution,
-    periods: _Periods,
+    periods: Periods,
     asked: dict[str, _Asked],
     part: int,
 ) -> Finding:
@@ -271,7 +271,7 @@ def _finding(
 
 
 def _expected(
-    periods: _Periods, written: PeriodicSolution, own: _Asked, since: arb, enclose: Enclose
+    periods: Periods, written: PeriodicSolution, own: _Asked, since: arb, enclose: Enclose
 ) -> list[arb]:
     if own.k is None:
         states = periods.after(written.count or 0, enclose)

@@ -18,12 +18,14 @@ from closedform.verification.driven.parts import (
     sustained_check,
     switch_check,
 )
+from closedform.verification.driven.periodic import periodic_checks
 from closedform.verification.driven.periods import (
     blow_check,
     period_formula_check,
     period_settings,
 )
 from closedform.verification.driven.reduction import reduction_checks
+from closedform.verification.driven.resonances import resonance_check
 from closedform.verification.driven.setting import Setting, setting_of
 from closedform.verification.driven.steady import (
     phasor_checks,
@@ -71,6 +73,7 @@ def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterato
     yield from reduction_checks(setting)
     yield from exact_checks(setting)
     yield stability_check(setting)
+    yield resonance_check(setting)
     yield from steady_checks(setting)
     yield from phasor_checks(setting)
     yield formula_check(setting)
@@ -83,6 +86,7 @@ def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterato
             yield replace(check, item=f"one period: {check.item}")
         yield blow_check(single, functions)
         yield period_formula_check(single, written)
+        yield from periodic_checks(single, written)
 
 
 def exact_checks(setting: Setting) -> Iterator[Check]:
