@@ -89,7 +89,7 @@ class Setting:
         return TimedSum.of(self.field, len(self.model.rows), parts)
 
     @cached_property
-    def _transition(self) -> ExponentialMatrix:
+    def transition(self) -> ExponentialMatrix:
         """The rows of the states in the exponential of the stacked matrix."""
         zero, one, n = self.field.domain.zero, self.field.domain.one, self.states
         size = range(int(self.exponential.shape[0]))
@@ -100,7 +100,7 @@ class Setting:
         """Return constant · e^(A (t - a)) column, n rows, for the k-th instant a."""
         size = int(self.exponential.shape[0])
         below = [[self.field.domain.zero]] * (size - self.states)
-        function = self._transition.times(self.field.matrix([*column.to_list(), *below]))
+        function = self.transition.times(self.field.matrix([*column.to_list(), *below]))
         key = (constant or ONE(self.field), self.instants[k])
         parts = [((*key, term.factor.p), term.residues) for term in function.terms]
         return TimedSum.of(self.field, self.states, parts)
