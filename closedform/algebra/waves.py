@@ -38,17 +38,19 @@ class Wave:
 class Constant:
     """The number e^growth · kernel(angle); growth and angle are elements of one field.
 
-    The angle is zero where the kernel is "one", and only there.
+    The angle is zero where the kernel is "one", and only there.  `named` is the name of a
+    number by which it is multiplied, if there is one.
     """
 
     growth: Scalar
     kernel: Kernel
     angle: Scalar
+    named: str = ""
 
     @property
     def is_one(self) -> bool:
         """Whether the number is 1 by its form."""
-        return self.kernel == "one" and not self.growth
+        return self.kernel == "one" and not self.growth and not self.named
 
 
 ConstantColumns = tuple[tuple[Constant, FieldMatrix], ...]

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, field, replace
+from functools import cached_property
 
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import BaseField, FieldMatrix, Scalar
@@ -21,7 +22,7 @@ from closedform.response.driven.particular import (
     selected,
 )
 
-__all__ = ["driven_functions", "rows_matrix"]
+__all__ = ["Part", "ParticularMotion", "Started", "driven_functions", "rows_matrix"]
 
 Put = Callable[[Scalar], Scalar]
 """What puts the equations of a branch into an element."""
@@ -30,12 +31,21 @@ Stays = Callable[[Tone], bool | None]
 
 
 @dataclass(frozen=True)
-class _Part:
+class Part:
     """constant · function(t - origin), function r x 1."""
 
     origin: Scalar
     constant: Constant
     function: ExponentialMatrix
+
+
+@dataclass(frozen=True)
+class Started:
+    """A free motion e^(A (t - origin)) column, n x 1, times a number with a name, if it has one."""
+
+    origin: Scalar
+    name: str
+    column: FieldMatrix
 
 
 @dataclass(frozen=True)
@@ -58,6 +68,7 @@ def driven_functions(
     put: Put = lambda element: element,
     relation: Scalar | None = None,
     stays: Stays | None = None,
+    free: Sequence[Started] | None = None,
 ) -> DrivenFunctions:
     """Return the functions of the driven solution, as e^(Mt) of the stacked matrix gives them.
 
@@ -65,12 +76,36 @@ def driven_functions(
     `relation` is the one that is kept.  With `stays`, which is given for a stable model
     alone, the last interval is told apart into what stays and what decays.
 
+    Where conditions at points stand in the place of initial values, `free` is the free motion
+    that meets them: it goes for the free part, and nothing else starts but what impulses do.
+
     Raises:  ValueError for a model whose initial values are not given at its start, or with a
              repeating input: these are put together elsewhere.
     """
-    if model.initial is None or any(i.signal.repeat for i in model.inputs):
+    known = model.initial is not None or free is not None
+    if not known or any(i.signal.repeat for i in model.inputs):
         raise ValueError("only initial values and inputs that do not repeat are put together here")
-    return _Assembly(model, exponential, put, relation).functions(stays)
+    return _Assembly(model, exponential, put, relation, free).functions(stays)
+
+
+class ParticularMotion:
+    """What the inputs do from the start on, with no free motion but that of jumps since then."""
+
+    def __init__(
+        self,
+        model: DrivenModel,
+        exponential: ExponentialMatrix,
+        *,
+        put: Put = lambda element: element,
+        relation: Scalar | None = None,
+    ) -> None:
+        self._assembly = _Assembly(model, exponential, put, relation, ())
+
+    def parts(self, place: int | None) -> list[Part]:
+        """Return what adds up in an interval; None for the start, before an impulse there."""
+        if place is None:
+            return self._assembly.sustained(0)
+        return self._assembly.driven(place)
 
 
 def rows_matrix(model: DrivenModel, put: Put = lambda element: element) -> FieldMatrix:
@@ -97,14 +132,17 @@ def rows_matrix(model: DrivenModel, put: Put = lambda element: element) -> Field
 
 @dataclass
 class _Columns:
-    """The columns so far; equal functions share one."""
+    """The columns so far; equal functions share one, but for those with a name of their own."""
 
     found: list[ExponentialMatrix] = field(default_factory=list)
+    names: list[str] = field(default_factory=list)
 
-    def place_of(self, function: ExponentialMatrix) -> int:
-        if function in self.found:
-            return self.found.index(function)
+    def place_of(self, function: ExponentialMatrix, name: str) -> int:
+        for place, (own, called) in enumerate(zip(self.found, self.names, strict=True)):
+            if called == name and own == function:
+                return place
         self.found.append(function)
+        self.names.append(name)
         return len(self.found) - 1
 
 
@@ -117,8 +155,10 @@ class _Assembly:
         exponential: ExponentialMatrix,
         put: Put,
         relation: Scalar | None,
+        free: Sequence[Started] | None,
     ) -> None:
         self.model, self.exponential, self.put = model, exponential, put
+        self.free_motion = free
         self.base: BaseField = model.field
         self.n = len(model.names)
         self.size = exponential.shape[0]
@@ -131,14 +171,8 @@ class _Assembly:
 
     def functions(self, stays: Stays | None) -> DrivenFunctions:
         last = len(self.instants) - 1
-        initial = self.base.matrix([[self.put(x)] for x in self.model.initial or ()])
-        free = [self._free(self.instants[0], ONE(self.base), initial)]
-        jumps = [self._jump(k) for k in range(last + 1)]
-        driven: list[list[_Part]] = []
-        for k in range(last + 1):
-            parts = self._sustained(k)
-            parts += [p for j in range(k + 1) for p in self._started(j, jumps[j])]
-            driven.append(parts)
+        free, jumps = self._free_parts(), self.jumps
+        driven = [self.driven(k) for k in range(last + 1)]
         whole = [self._merged([*parts, *free], self.instants[k]) for k, parts in enumerate(driven)]
         intervals = tuple(self._interval(k, parts) for k, parts in enumerate(whole))
         forced = tuple(
@@ -147,7 +181,7 @@ class _Assembly:
         )
         switches = tuple(self._switch(k, jumps[k]) for k in range(1, last + 1))
         sustained = tuple(
-            self._interval(k, self._merged(self._sustained(k), self.instants[k]))
+            self._interval(k, self._merged(self.sustained(k), self.instants[k]))
             for k in range(last + 1)
         )
         free_part = self._summands(self._merged(free, self.instants[0]))
@@ -160,12 +194,32 @@ class _Assembly:
             forced,
             sustained[last].summands,
             sustained,
-            tuple(jumps),
+            jumps,
             steady,
             transient,
         )
 
     # What each part is made of
+
+    @cached_property
+    def jumps(self) -> tuple[ConstantColumns, ...]:
+        """h_j of all instants; without initial values the first is what impulses do."""
+        return tuple(self._jump(k) for k in range(len(self.instants)))
+
+    def driven(self, k: int) -> list[Part]:
+        """What the waves that are on in an interval sustain, and what the jumps so far started."""
+        started = [p for j in range(k + 1) for p in self._started(j, self.jumps[j])]
+        return [*self.sustained(k), *started]
+
+    def _free_parts(self) -> list[Part]:
+        """The response to the initial values, or the free motion that stands for it."""
+        if self.free_motion is None:
+            initial = self.base.matrix([[self.put(x)] for x in self.model.initial or ()])
+            return [self._free(self.instants[0], ONE(self.base), initial)]
+        one = ONE(self.base)
+        return [
+            self._free(s.origin, replace(one, named=s.name), s.column) for s in self.free_motion
+        ]
 
     def _waves_on(self) -> Iterable[_On]:
         """Every wave with the instants between which it is on."""
@@ -191,11 +245,11 @@ class _Assembly:
         column = [[zero] for _ in range(self.n)] + [[self.put(e)] for (e,) in start]
         return of_input(self.drive, self.exponential.times(self.base.matrix(column)))
 
-    def _particular(self, on: _On) -> list[_Part]:
+    def _particular(self, on: _On) -> list[Part]:
         function = self._particular_function(on).after(self.rows)
-        return [_Part(self.put(on.wave.origin), ONE(self.base), function)]
+        return [Part(self.put(on.wave.origin), ONE(self.base), function)]
 
-    def _sustained(self, k: int) -> list[_Part]:
+    def sustained(self, k: int) -> list[Part]:
         """What the waves that are on in an interval sustain."""
         return [part for on in self.on if _is_on(on, k) for part in self._particular(on)]
 
@@ -205,7 +259,7 @@ class _Assembly:
         parts: list[tuple[Constant, FieldMatrix]] = []
         for on in self.on:
             sign = (on.first == k) - (on.last == k)
-            if not sign:
+            if not sign or (k == 0 and self.free_motion is not None):
                 continue
             function = self._particular_function(on).after(self.top)
             d = at - self.put(on.wave.origin)
@@ -231,40 +285,40 @@ class _Assembly:
                     total = column if total is None else total + column
         return total
 
-    def _free(self, at: Scalar, constant: Constant, column: FieldMatrix) -> _Part:
+    def _free(self, at: Scalar, constant: Constant, column: FieldMatrix) -> Part:
         zero = self.base.domain.zero
         below = [[zero] for _ in range(self.size - self.n)]
         start = self.base.matrix([*column.to_list(), *below])
-        return _Part(at, constant, self.exponential.times(start).after(self.rows))
+        return Part(at, constant, self.exponential.times(start).after(self.rows))
 
-    def _started(self, j: int, jump: ConstantColumns) -> list[_Part]:
+    def _started(self, j: int, jump: ConstantColumns) -> list[Part]:
         return [self._free(self.instants[j], constant, column) for constant, column in jump]
 
     # How parts are put together
 
-    def _merged(self, parts: Sequence[_Part], at: Scalar) -> list[_Part]:
+    def _merged(self, parts: Sequence[Part], at: Scalar) -> list[Part]:
         """The parts with those of one origin and constant added up, constants at `at`."""
         one = ONE(self.base)
         polynomial = rebased(
             self.base, [(p.origin, p.function) for p in parts if p.constant.is_one], at
         )
         rest = [
-            _Part(p.origin, p.constant, constants_of(p.function, kept=False))
+            Part(p.origin, p.constant, constants_of(p.function, kept=False))
             if p.constant.is_one
             else p
             for p in parts
         ]
         found: dict[tuple[Scalar, Constant], list[ExponentialMatrix]] = {}
-        for part in (*(_Part(o, one, f) for o, f in polynomial), *rest):
+        for part in (*(Part(o, one, f) for o, f in polynomial), *rest):
             found.setdefault((part.origin, part.constant), []).append(part.function)
         merged = [
-            _Part(origin, constant, combined((1, f) for f in functions))
+            Part(origin, constant, combined((1, f) for f in functions))
             for (origin, constant), functions in found.items()
         ]
         return [part for part in merged if not _is_zero(part.function)]
 
     def _told_apart(
-        self, parts: Sequence[_Part], stays: Stays
+        self, parts: Sequence[Part], stays: Stays
     ) -> tuple[tuple[Summand, ...] | None, tuple[Summand, ...] | None]:
         """What stays and what decays of the parts of a stable model; None if this is not known."""
         steady, transient = [], []
@@ -282,12 +336,13 @@ class _Assembly:
         found = [[p for p in ps if not _is_zero(p.function)] for ps in (steady, transient)]
         return self._summands(found[0]), self._summands(found[1])
 
-    def _summands(self, parts: Sequence[_Part]) -> tuple[Summand, ...]:
+    def _summands(self, parts: Sequence[Part]) -> tuple[Summand, ...]:
         return tuple(
-            Summand(self.columns.place_of(p.function), p.origin, p.constant) for p in parts
+            Summand(self.columns.place_of(p.function, p.constant.named), p.origin, p.constant)
+            for p in parts
         )
 
-    def _interval(self, k: int, parts: Sequence[_Part]) -> Interval:
+    def _interval(self, k: int, parts: Sequence[Part]) -> Interval:
         end = self.instants[k + 1] if k + 1 < len(self.instants) else None
         return Interval(self.instants[k], end, self._summands(parts))
 
@@ -297,7 +352,7 @@ class _Assembly:
             sign = (on.first == k) - (on.last == k)
             if sign:
                 parts += [
-                    _Part(p.origin, p.constant, combined([(sign, p.function)]))
+                    Part(p.origin, p.constant, combined([(sign, p.function)]))
                     for p in self._particular(on)
                 ]
         parts += self._started(k, jump)

@@ -9,6 +9,7 @@ from closedform.algebra.field import BaseField, Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.waves import Constant
 from closedform.notation.expression import (
+    ONE,
     ZERO,
     Call,
     Expression,
@@ -19,6 +20,8 @@ from closedform.notation.expression import (
     Product,
     Quotient,
     Sum,
+    factors_of,
+    operations,
     product,
 )
 from closedform.notation.rational_formula import rational_formula
@@ -165,7 +168,43 @@ def summed(
         moved = shifted(formula, time, element_formula(field, summand.origin))
         constant = constant_formula(field, summand.constant)
         terms.append(moved if constant is None else scaled(constant, moved))
+    if any(summand.constant.named for summand in summands):
+        terms = _over_one(terms)
     return opened(sum_of(terms)) if terms else ZERO
+
+
+def _over_one(terms: Sequence[Expression]) -> list[Expression]:
+    """The terms, those of one denominator put together where that is shorter."""
+    alike: dict[Expression, list[Expression]] = {}
+    for term in terms:
+        inside, minus = (term.operand, True) if isinstance(term, Negation) else (term, False)
+        below = inside.denominator if isinstance(inside, Quotient) else ONE
+        above = inside.numerator if isinstance(inside, Quotient) else inside
+        alike.setdefault(below, []).append(negated(above) if minus else above)
+    found: list[Expression] = []
+    for below, several in alike.items():
+        fronts, whole = _in_front(several)
+        above = product((*fronts, whole)) if fronts else whole
+        if below != ONE and isinstance(above, Negation):
+            found.append(Negation(Quotient(above.operand, below)))
+        else:
+            found.append(above if below == ONE else Quotient(opened(above), below))
+    return min((list(terms), found), key=lambda form: operations(sum_of(form)))
+
+
+def _in_front(terms: Sequence[Expression]) -> tuple[list[Expression], Expression]:
+    """The factors that all terms share, and the sum of what is left of them."""
+    if len(terms) < 2:
+        return [], sum_of(terms)
+    parts = [list(factors_of(t.operand if isinstance(t, Negation) else t)) for t in terms]
+    shared = [f for f in parts[0] if all(f in own for own in parts[1:])]
+    if not shared or len(set(shared)) < len(shared):
+        return [], sum_of(terms)
+    left = []
+    for term, own in zip(terms, parts, strict=True):
+        rest = product([f for f in own if f not in shared])
+        left.append(Negation(rest) if isinstance(term, Negation) else rest)
+    return shared, sum_of(left)
 
 
 def scaled(factor: Expression, formula: Expression) -> Expression:

@@ -23,9 +23,11 @@ from closedform.notation.plain import plain
 from closedform.notation.shown import FormulaColumn, cases_latex
 from closedform.response.by_mode import ByMode
 from closedform.response.driven.assembly import driven_functions
+from closedform.response.driven.boundary import InBranch, PointSolution
 from closedform.response.driven.composition import (
     element_formula,
 )
+from closedform.response.driven.determined import determined, names_of_constants, written
 from closedform.response.driven.functions import DrivenFunctions
 from closedform.response.driven.in_field import in_field
 from closedform.response.driven.particular import beside
@@ -185,7 +187,14 @@ def _in_cases(model: DrivenModel, stacked: ParametricModel) -> DrivenResponse:
             return field.substituted(element, branch.values)
 
         found[branch.number] = _sought(
-            model, branch.exponential, put=put, relation=branch.relation, domain=branch.domain
+            model,
+            branch.exponential,
+            put=put,
+            relation=branch.relation,
+            domain=branch.domain,
+            case=" and ".join(
+                f"{plain(element_formula(field, e.polynomial))} = 0" for e in branch.equations
+            ),
         )
         return found[branch.number].columns
 
@@ -208,6 +217,8 @@ class _Sought:
     periods: tuple[PeriodFunctions, ...]
     stability: Stability
     resonances: tuple[Resonance, ...]
+    points: PointSolution | None = None
+    names: tuple[str, ...] = ()
 
     @property
     def columns(self) -> ExponentialMatrix:
@@ -225,23 +236,40 @@ def _sought(
     put: Callable[[Scalar], Scalar] = lambda element: element,
     relation: Scalar | None = None,
     domain: ParameterDomain | None = None,
+    case: str = "",
 ) -> _Sought:
     sign_of = sign_oracle(model.field, domain)
     stability = stability_of(model, domain, put)
     tells = stability.verdict == "stable" and not repeating(model)
+    points, started = None, None
+    names: tuple[str, ...] = ()
+    given = without_repeats(model)
+    if model.initial is None:
+        branch = InBranch(put, relation, domain, case)
+        points = determined(model, exponential, _motion, branch)
+        names = names_of_constants(model, points)
+        given = replace(given, initial=points.initial_in_field)
+        started = points.started(names) if given.initial is None else None
     base = driven_functions(
-        without_repeats(model),
+        given,
         exponential,
         put=put,
         relation=relation,
         stays=stays(sign_of) if tells else None,
+        free=started,
     )
     periods = tuple(
         period_functions(model, repeat, exponential, put=put, relation=relation)
         for repeat in repeating(model)
     )
     resonances = resonances_of(model, exponential, sign_of, put=put, relation=relation)
-    return _Sought(base, periods, stability, resonances)
+    return _Sought(base, periods, stability, resonances, points, names)
+
+
+def _motion(model: DrivenModel) -> list[tuple[str, Expression]]:
+    """The formulas of a model from initial values, in its first case."""
+    solution = respond_driven(model).solutions[0]
+    return list(zip(model.rows, solution.solution, strict=True))
 
 
 def _solution(
@@ -265,6 +293,9 @@ def _solution(
         )
         first, first_parted = last, last_parted
     own = tuple(row[:width] for row in columns)
+    points = None if sought.points is None else written(sought.points, sought.names, case)
+    if points is not None:
+        own = points.worked_in(own, sought.base)
     condition = "true" if case is None else case.condition
     return DrivenSolution(
         model,
@@ -275,4 +306,5 @@ def _solution(
         tuple(periodic),
         sought.periods,
         tuple(replace(resonance, condition=condition) for resonance in sought.resonances),
+        points=points,
     )

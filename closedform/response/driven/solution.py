@@ -16,6 +16,7 @@ from closedform.response.driven.composition import (
     interval_formula,
     step_formula,
 )
+from closedform.response.driven.determined import PointConstants
 from closedform.response.driven.functions import DrivenFunctions, Interval, Summand
 from closedform.response.driven.particular import Drive, drive_of
 from closedform.response.driven.period_formulas import PeriodicSolution
@@ -40,7 +41,8 @@ class DrivenSolution:
     `columns` are the formulas of the columns of `functions`, r x c; `case` is that of the
     stacked response, None without parameters.  What inputs that repeat add to it, from rest,
     is in `periodic`, made of `periods`.  `stability` is that of the model's own matrix;
-    `resonances` are the tones of inputs that are eigenvalues of it.
+    `resonances` are the tones of inputs that are eigenvalues of it.  `points` are the constants
+    that conditions at points determine, worked into `columns`.
     """
 
     model: DrivenModel
@@ -51,6 +53,7 @@ class DrivenSolution:
     periodic: tuple[PeriodicSolution, ...] = ()
     periods: tuple[PeriodFunctions, ...] = ()
     resonances: tuple[Resonance, ...] = ()
+    points: PointConstants | None = None
 
     @property
     def condition(self) -> str:
