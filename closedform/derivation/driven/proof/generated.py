@@ -73,8 +73,8 @@ def _first_period(spot: Spot, given: Input, side: Side) -> Iterator[Finding]:
     if repeat is None:
         return
     first, length = spot.element(repeat.start), spot.element(repeat.period)
-    for share in (1, 4, 8, 13):
-        t = first + length * share / 16
+    for share in (5, 23, 50, 83):  # over a prime: nothing is likely to switch there
+        t = first + length * share / 97
         names = {**spot.names, spot.model.time: t}
         expected = acb(0)
         for burst in given.signal.bursts:
