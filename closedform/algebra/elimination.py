@@ -15,9 +15,13 @@ from functools import reduce
 from operator import mul
 
 from closedform.algebra.field import BaseField, Scalar
+from closedform.algebra.fraction_free import EliminationSizeError, fraction_free
 from closedform.algebra.parameter_field import ParameterField
 
-__all__ = ["Elimination", "SparseRow", "eliminated"]
+__all__ = ["Elimination", "SparseRow", "eliminated", "solved_for"]
+
+MOST_TERMS_OF_FRACTION = 60
+"""Terms above and below together: common factors of longer fractions take seconds to find."""
 
 SparseRow = Mapping[int, Scalar]
 """The elements of a row that are not zero, by their column."""
@@ -64,13 +68,52 @@ def eliminated(
                 break
             work.divide(*found)
             order.remove(found[1])
-    taken = set(work.places.values())
-    return Elimination(
-        field,
-        {column: work.rows[place] for column, place in work.places.items()},
-        tuple(row for place, row in enumerate(work.rows) if place not in taken),
-        tuple(work.pivots),
-    )
+    return work.result
+
+
+def solved_for(
+    field: ParameterField, rows: Sequence[SparseRow], columns: Sequence[int]
+) -> Elimination | None:
+    """Return as many rows solved for as many columns, None if these are not independent.
+
+    Divided is by numbers and single terms as long as there are any, and what is left is
+    solved without fractions; the minor alone tells where the solution is not defined.
+
+    Raises EliminationSizeError.
+    """
+    work = _Work(field, [dict(row) for row in rows], bool)
+    left = list(columns)
+    while left:
+        found = work.pivot(left, simple=True)
+        if found is None:
+            break
+        work.divide(*found)
+        left.remove(found[1])
+    result = work.result
+    if not left:
+        return result
+    dense = fraction_free(field, result.rest, left)
+    if dense is None:
+        return None
+    solved, determinant = dense
+    for column, row in result.solved.items():
+        within = dict(row)
+        for other in left:
+            if other in within:
+                factor = within[other]
+                _subtract(field, within, solved[other], factor)
+        solved[column] = within
+    return Elimination(field, solved, (), (*result.pivots, determinant))
+
+
+def _subtract(field: BaseField, target: dict[int, Scalar], row: SparseRow, factor: Scalar) -> None:
+    """Take a multiple of a row off another."""
+    for column, element in row.items():
+        left = target.get(column, field.domain.zero) - factor * element
+        if left:
+            target[column] = left
+        else:
+            target.pop(column, None)
 
 
 class _Work:
@@ -91,14 +134,28 @@ class _Work:
             for column in row:
                 self.holders.setdefault(column, set()).add(place)
 
-    def pivot(self, order: Sequence[int]) -> tuple[int, int] | None:
-        """Return the row and the column of the next pivot."""
+    @property
+    def result(self) -> Elimination:
+        """The rows as they are."""
+        taken = set(self.places.values())
+        return Elimination(
+            self.field,
+            {column: self.rows[place] for column, place in self.places.items()},
+            tuple(row for place, row in enumerate(self.rows) if place not in taken),
+            tuple(self.pivots),
+        )
+
+    def pivot(self, order: Sequence[int], *, simple: bool = False) -> tuple[int, int] | None:
+        """Return the row and the column of the next pivot; a number or a term if `simple`."""
         candidates = []
         for rank, column in enumerate(order):
             within = self.holders.get(column, set()) & self.open
             for place in within:
+                element = self.rows[place][column]
+                doubt = not self._is_number(element)
+                if simple and doubt and len(element.numer) + len(element.denom) > 2:
+                    continue
                 fill = (len(self.rows[place]) - 1) * (len(within) - 1)
-                doubt = not self._is_number(self.rows[place][column])
                 candidates.append((doubt, fill, rank, place, column))
         candidates.sort()
         for doubt, _, _, place, column in candidates:
@@ -118,14 +175,17 @@ class _Work:
 
     def _subtract(self, place: int, row: Mapping[int, Scalar], factor: Scalar) -> None:
         target = self.rows[place]
-        for column, element in row.items():
-            left = target.get(column, self.field.domain.zero) - factor * element
-            if left:
-                target[column] = left
-                self.holders.setdefault(column, set()).add(place)
-            else:
-                target.pop(column, None)
-                self.holders[column].discard(place)
+        before = set(target)
+        _subtract(self.field, target, row, factor)
+        for column in target.keys() - before:
+            self.holders.setdefault(column, set()).add(place)
+        for column in before - target.keys():
+            self.holders[column].discard(place)
+        if isinstance(self.field, ParameterField):
+            for column in row:
+                element = target.get(column)
+                if element and len(element.numer) + len(element.denom) > MOST_TERMS_OF_FRACTION:
+                    raise EliminationSizeError(MOST_TERMS_OF_FRACTION)
 
     def _is_number(self, element: Scalar) -> bool:
         if isinstance(self.field, ParameterField):

@@ -15,7 +15,7 @@ from dataclasses import dataclass
 
 from sympy.polys.matrices.exceptions import DMNonInvertibleMatrixError
 
-from closedform.algebra.elimination import Elimination, SparseRow, eliminated
+from closedform.algebra.elimination import Elimination, SparseRow, eliminated, solved_for
 from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.model.driven.balance_system import BalanceSystem
@@ -59,9 +59,8 @@ def reduced(system: BalanceSystem) -> Reduced:
 def _of_highest(system: BalanceSystem) -> Reduced | None:
     """Solve for the highest jets, if they can be solved for."""
     if isinstance(system.field, ParameterField):
-        tops = range(len(system.tops))
-        found = eliminated(system.field, system.rows, [tops], system.never_zero)
-        if len(found.solved) < len(tops):
+        found = solved_for(system.field, system.rows, range(len(system.tops)))
+        if found is None:
             return None
         values = {c: _moved(row, c) for c, row in found.solved.items()}
         divisors = [found.minor]
