@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import replace
 from fractions import Fraction
 
@@ -38,9 +38,13 @@ def settled_constant(field: BaseField, constant: Constant) -> tuple[tuple[Scalar
     return ((one, constant),)
 
 
-def enclosed_constant(enclose: Callable[[Scalar], arb], constant: Constant) -> arb:
-    """Return a ball for a number."""
+def enclosed_constant(
+    enclose: Callable[[Scalar], arb], constant: Constant, named: Mapping[str, arb]
+) -> arb:
+    """Return a ball for a number; `named` has those of numbers with names."""
     value = enclose(constant.growth).exp()
+    if constant.named:
+        value = value * named.get(constant.named, arb("nan"))
     if constant.kernel == "one":
         return value
     angle = enclose(constant.angle)

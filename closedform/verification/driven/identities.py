@@ -58,9 +58,9 @@ def _differs(setting: Setting, residual: Residual) -> bool:
     """Whether a row of a residual is certainly not zero at an instant of its interval."""
     with ctx.workprec(_BITS):
         for ground in setting.grounds:
-            enclose = ground.enclose()
+            enclose, named = ground.enclose(), setting.named(ground)
             for t in setting.inside(residual.interval, enclose):
-                values = residual.function.enclosure(enclose, t)
+                values = residual.function.enclosure(enclose, t, named)
                 if any(v.is_finite() and not v.contains(0) for v in values):
                     return True
     return False

@@ -27,28 +27,30 @@ __all__ = ["initial_check", "join_check", "value_fault"]
 _BITS = 2048
 
 
-def initial_check(setting: Setting) -> Check:
-    """The states at the start are those given; an impulse there makes them jump by B · amount."""
+def initial_check(setting: Setting) -> Iterator[Check]:
+    """Yield the check that states at the start are those given, or jump there by B · amount."""
     item = "x(start) = x0"
     model, n = setting.model, setting.states
     if model.initial is None:
-        return Check(item, "not attempted", "values elsewhere than at the start are given")
+        return
     given = setting.matrix([[x] for x in model.initial])
     for jet, value in model.stated_initial:
         if jet in model.reduction.jets:
             own = model.initial[model.reduction.jets.index(jet)]
             if not setting.vanishes(setting.put(own - value)):
-                return Check(item, "refuted", f"{jet.text} is another at the start")
+                yield Check(item, "refuted", f"{jet.text} is another at the start")
+                return
     first = setting.wholes[0].after(setting.selecting(range(n)))
     found = [_check_of_value(setting, "x", first, 0, given + setting.blow(0))]
     found += list(_algebraic(setting, given))
     settled = _first_unsettled(item, found)
     if settled is not None:
-        return settled
+        yield settled
+        return
     told = "every state has the value that is given"
     if setting.strikes(0):
         told += ", moved by B times the amounts of the impulses there"
-    return Check(item, _outcome(found), f"the start was put in: {told}")
+    yield Check(item, _outcome(found), f"the start was put in: {told}")
 
 
 def _algebraic(setting: Setting, given: FieldMatrix) -> Iterator[Check]:
@@ -119,7 +121,9 @@ def _check_of_value(
     with ctx.workprec(_BITS):
         for ground in setting.grounds:
             enclose = ground.enclose()
-            values = function.enclosure(enclose, enclose(setting.instants[k]))
+            values = function.enclosure(
+                enclose, enclose(setting.instants[k]), setting.named(ground)
+            )
             for number, (value, (element,)) in enumerate(
                 zip(values, expected.to_list(), strict=True), start=1
             ):

@@ -15,6 +15,8 @@ from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.waves import ONE, Constant, Wave
 from closedform.model.driven.model import DrivenModel, Jet
 from closedform.model.driven.signal import Impulse, Signal
+from closedform.notation import enclose, plain, read_formula
+from closedform.notation.expression import Expression
 from closedform.response.driven.functions import Summand
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.parametric.response import ParametricResponse
@@ -199,6 +201,17 @@ class Setting:
 
     # Certified numbers
 
+    def named(self, ground: Ground) -> dict[str, arb]:
+        """Return balls for the constants with names, from their formulas as written."""
+        points = self.solution.points
+        if points is None:
+            return {}
+        known = ground.balls()
+        return {c.name: enclose(self._read_back(c.formula), known) for c in points.constants}
+
+    def _read_back(self, formula: Expression) -> Expression:
+        return read_formula(plain(formula), names=self.names)
+
     def inside(self, k: int, enclose: Enclose) -> tuple[arb, ...]:
         """Return balls for two instants inside of an interval."""
         first = enclose(self.instants[k])
@@ -226,6 +239,21 @@ class Setting:
             return [list(row) for row in rows]
         return [[self.field.scalar(e) for e in row] for row in rows]
 
+    def interval_of(self, at: Scalar, enclose: Enclose) -> int | None:
+        """Return the interval that holds an instant or ends with it, None for the start.
+
+        Where balls do not tell two instants apart, they count as the same.
+        """
+        own = self.put(at)
+        if self.vanishes(own - self.instants[0]):
+            return None
+        after = [
+            k
+            for k, instant in enumerate(self.instants)
+            if not self.vanishes(own - instant) and enclose(own - instant) > 0
+        ]
+        return max(after, default=0)
+
     def out_of_order(self) -> int | None:
         """Return the number of an instant that was not shown to come after the one before."""
         for number, (one, other) in enumerate(pairwise(self.instants), start=1):
@@ -244,6 +272,10 @@ def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:
     """Return a case of a response, with points of it."""
     model, stacked, case = response.model, response.stacked, solution.case
     model = _without_repeats(model)
+    points = solution.points
+    if points is not None:
+        model = replace(model, initial=points.found.initial_in_field)
+    names = frozenset() if points is None else frozenset(c.name for c in points.constants)
     if not isinstance(stacked, ParametricResponse):
         values = NamedValues(stacked.closed_forms.constants)
         return Setting(
@@ -254,7 +286,7 @@ def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:
             lambda element: element,
             is_zero_element,
             (Ground(model.field, "", values.balls),),
-            frozenset(c.name for c in stacked.closed_forms.constants),
+            names | frozenset(c.name for c in stacked.closed_forms.constants),
         )
     if case is None:
         raise ValueError("a solution with parameters belongs to a case")
@@ -267,7 +299,7 @@ def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:
         lambda element: field.substituted(element, branch.values),
         lambda element: vanishes_on(branch, element),
         grounds_of(stacked, case),
-        frozenset({*field.parameters, *(q.name for q in case.quantities)}),
+        names | frozenset({*field.parameters, *(q.name for q in case.quantities)}),
     )
 
 

@@ -36,12 +36,62 @@ class Steps:
         return self.with_rows(states, self.inputs(k, t, enclose), enclose)
 
     def free_rows(self, t: arb, enclose: Enclose) -> list[arb]:
-        """Return balls for the rows of the response to the initial values alone."""
-        since = t - enclose(self.setting.instants[0])
-        initial = [enclose(self.setting.put(x)) for x in self.setting.model.initial or ()]
-        states = self.carried_free(initial, since, enclose)
+        """Return balls for the rows of the free part.
+
+        It starts with the initial values.  Where conditions at points stand for these, and their
+        values at the start are not in the field, it starts with what the first sustained part
+        leaves of them.
+        """
+        begin = enclose(self.setting.instants[0])
+        initial = self.initial(enclose)
+        if self.setting.model.initial is None:
+            sustained = self.setting.total(self.setting.solution.functions.sustained[0].summands)
+            held = sustained.enclosure(enclose, begin)[: len(initial)]
+            initial = [x - p for x, p in zip(initial, held, strict=True)]
+        states = self.carried_free(initial, t - begin, enclose)
         silent = [arb(0)] * len(self.setting.model.inputs)
         return self.with_rows(states, silent, enclose)
+
+    def initial(self, enclose: Enclose) -> list[arb]:
+        """Return balls for the states at the start, before an impulse there.
+
+        Conditions at points are n equations for them, which are solved in balls: what is finite
+        is the only solution.
+        """
+        setting, n = self.setting, self.setting.states
+        if setting.model.initial is not None:
+            return [enclose(setting.put(x)) for x in setting.model.initial]
+        if (-1, ctx.prec) not in self._kept:
+            rows, right = arb_mat(n, n), arb_mat(n, 1)
+            begin = enclose(setting.instants[0])
+            matrix = self._matrix(setting.model.reduction.matrix, enclose)
+            for i, condition in enumerate(setting.model.conditions):
+                weights = [enclose(setting.put(w)) for w in condition.of_states]
+                at = enclose(setting.put(condition.at))
+                moved = _exponential(matrix, at - begin)
+                for j in range(n):
+                    rows[i, j] = _dot(weights, [moved[k, j] for k in range(n)])
+                rest = self._from_rest(setting.interval_of(condition.at, enclose), at, enclose)
+                right[i, 0] = enclose(setting.put(condition.value)) - _dot(weights, rest)
+            try:
+                solved = rows.solve(right)
+                self._kept[-1, ctx.prec] = [solved[i, 0] for i in range(n)]
+            except ZeroDivisionError:  # not known to be invertible at this precision
+                self._kept[-1, ctx.prec] = [arb("nan")] * n
+        return self._kept[-1, ctx.prec]
+
+    def _from_rest(self, place: int | None, at: arb, enclose: Enclose) -> list[arb]:
+        """The states at an instant of an interval, from zero at the start; None for the start."""
+        states = [arb(0)] * self.setting.states
+        if place is None:
+            return states
+        for k in range(place + 1):
+            if k:
+                begin = enclose(self.setting.instants[k])
+                states = self._carried(k - 1, states, begin, enclose)
+            blow = self.setting.blow(k).to_list()
+            states = [x + enclose(b) for x, (b,) in zip(states, blow, strict=True)]
+        return self._carried(place, states, at, enclose)
 
     def carried_free(self, states: Sequence[arb], since: arb, enclose: Enclose) -> list[arb]:
         """Return balls for e^(A since) states."""
@@ -83,7 +133,7 @@ class Steps:
                 at = enclose(self.setting.instants[k])
                 states = self._carried(k - 1, self._begun(k - 1, enclose), at, enclose)
             else:
-                states = [enclose(self.setting.put(x)) for x in self.setting.model.initial or ()]
+                states = self.initial(enclose)
             blow = self.setting.blow(k).to_list()
             self._kept[k, ctx.prec] = [x + enclose(b) for x, (b,) in zip(states, blow, strict=True)]
         return self._kept[k, ctx.prec]

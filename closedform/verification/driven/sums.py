@@ -90,12 +90,17 @@ class TimedSum:
         ]
         return min(found, default=None)
 
-    def enclosure(self, enclose: Enclose, t: arb) -> list[arb]:
-        """Return a ball for each row at an instant, at FLINT's current precision."""
+    def enclosure(
+        self, enclose: Enclose, t: arb, named: Mapping[str, arb] | None = None
+    ) -> list[arb]:
+        """Return a ball for each row at an instant, at FLINT's current precision.
+
+        `named` has balls for the numbers with names in constants.
+        """
         total = [arb(0)] * self.rows
         for (constant, origin, p), residues in self.parts.items():
             s = t - enclose(origin)
-            front = enclosed_constant(enclose, constant)
+            front = enclosed_constant(enclose, constant, named or {})
             coefficients = [enclose(c) for c in p.to_list()]
             by_power = _values(enclose, residues, s)
             for row, value in enumerate(_over_roots(coefficients, by_power, s)):

@@ -24,6 +24,7 @@ from closedform.verification.driven.periods import (
     period_formula_check,
     period_settings,
 )
+from closedform.verification.driven.points import point_check
 from closedform.verification.driven.reduction import reduction_checks
 from closedform.verification.driven.resonances import resonance_check
 from closedform.verification.driven.setting import Setting, setting_of
@@ -96,7 +97,8 @@ def exact_checks(setting: Setting) -> Iterator[Check]:
         yield balance_check(setting)
     yield state_form_check(setting)
     yield from rows_check(setting)
-    yield initial_check(setting)
+    yield from initial_check(setting)
+    yield from point_check(setting)
     yield from join_check(setting)
     yield free_forced_check(setting)
     yield from switch_check(setting)

@@ -36,8 +36,6 @@ class _Written:
 
 def formula_check(setting: Setting) -> Check:
     """Pieces, the form with unit steps, free, forced and sustained parts, in every interval."""
-    if setting.model.initial is None:
-        return Check(_ITEM, "not attempted", "values elsewhere than at the start are given")
     if not setting.grounds:
         return Check(_ITEM, "not attempted", "no point of this case was found to put in")
     try:
@@ -130,8 +128,8 @@ def _written(setting: Setting, k: int) -> Iterator[tuple[str, _Written]]:
 def _exact(function: TimedSum) -> Callable[[Steps, arb, Enclose], list[arb]]:
     """What is sustained, by its exact form: the equations alone leave open how it begins."""
 
-    def value(_: Steps, t: arb, enclose: Enclose) -> list[arb]:
-        return function.enclosure(enclose, t)
+    def value(steps: Steps, t: arb, enclose: Enclose) -> list[arb]:
+        return function.enclosure(enclose, t, steps.setting.named(steps.ground))
 
     return value
 
@@ -144,7 +142,7 @@ def _finding(
     def evaluate(names: Sequence[str]) -> Iterator[Pair]:
         enclose = ground.enclose()
         t = setting.inside(k, enclose)[place]
-        known = {**ground.balls(), setting.model.time: t}
+        known = {**ground.balls(), **setting.named(ground), setting.model.time: t}
         kept: dict[Callable[..., list[arb]], list[arb]] = {}
         for name in names:
             written = formulas[name]
