@@ -33,6 +33,7 @@ __all__ = [
     "perfect_root",
     "quantities_of",
     "squares_of",
+    "value_at_pair",
 ]
 
 NAMED_REAL = frozenset({"decaying", "real roots"})
@@ -60,7 +61,8 @@ class Mode:
     """A factor in one regime, and the names of what belongs to its roots.
 
     `frequency` is an element of K where sqrt(± D) is one, and needs no name.  Known roots
-    have `residues`: the amounts with which they occur.
+    have `residues`: the amounts with which they occur; `others` is the product of the other
+    factors then.
     """
 
     factor: Factor
@@ -68,6 +70,7 @@ class Mode:
     names: tuple[str, ...] = ()
     frequency: Scalar | None = None
     residues: tuple[Residue, ...] = ()
+    others: Polynomial | None = None
 
     @property
     def written_names(self) -> tuple[str, ...]:
@@ -270,6 +273,19 @@ def _known_residues(mode: Mode) -> Iterator[Quantity]:
                 tuple(residue.beside.to_list()),
             )
             yield Quantity(residue.name, definition, positive=False)
+
+
+def value_at_pair(
+    field: ParameterField, coefficients: Sequence[Scalar], rate: Scalar, frequency: Scalar
+) -> tuple[Scalar, Scalar]:
+    """Return real and imaginary part of a polynomial at rate + i frequency.
+
+    All are elements of one field; the coefficients stand highest first.
+    """
+    u = v = field.domain.zero
+    for c in coefficients:
+        u, v = u * rate - v * frequency + c, u * frequency + v * rate
+    return u, v
 
 
 def squares_of(factor: Factor) -> Polynomial:

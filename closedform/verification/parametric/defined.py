@@ -28,7 +28,7 @@ from closedform.notation.expression import (
 )
 from closedform.notation.rational import rational_value
 from closedform.response.parametric.case import Case
-from closedform.response.parametric.modes import Mode
+from closedform.response.parametric.modes import Mode, value_at_pair
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.values import read_back
 from closedform.verification.record import Check
@@ -170,6 +170,8 @@ def _with_names(base: ParameterField, field: ParameterField, case: Case) -> Para
         for other in case.modes:
             if other is not mode and mode.regime.kind in _SIGNS:
                 conditions += _apart(base, field, mode, other)
+            elif other is not mode and mode.regime.kind == "known roots":
+                conditions += _apart_from_known(base, field, mode, other)
     for quantity in case.quantities:
         formula = quantity.formula
         if quantity.origin != "roots" and formula is not None and not _has_root(formula):
@@ -260,6 +262,19 @@ def _apart(
         for c in other.factor.polynomial:
             value = value * root + base.into(field, c)
         yield Comparison(value, "!=")
+
+
+def _apart_from_known(
+    base: ParameterField, field: ParameterField, mode: Mode, other: Mode
+) -> Iterator[Comparison]:
+    """|q(lambda)|^2 is positive for the known roots lambda of a mode and another factor q."""
+    coefficients = [base.into(field, c) for c in other.factor.polynomial]
+    for _, rate, frequency in mode.named_roots:
+        centre = base.into(field, mode.factor.roots.centre)
+        place = centre if rate is None else field.symbol(rate)
+        turn = field.domain.zero if frequency is None else field.symbol(frequency)
+        u, v = value_at_pair(field, coefficients, place, turn)
+        yield Comparison(u, "!=") if frequency is None else Comparison(u**2 + v**2, ">")
 
 
 def _has_root(expression: Expression) -> bool:
