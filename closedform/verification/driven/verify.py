@@ -8,6 +8,7 @@ from dataclasses import replace
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.driven.declared import declared_check
+from closedform.verification.driven.defined import defined_checks
 from closedform.verification.driven.equations import balance_check, rows_check, state_form_check
 from closedform.verification.driven.generated import generator_check, stacked_check
 from closedform.verification.driven.joins import initial_check, join_check
@@ -34,7 +35,7 @@ from closedform.verification.driven.steady import (
     steady_checks,
 )
 from closedform.verification.driven.typed import typed_check
-from closedform.verification.driven.written import defined_check, formula_check
+from closedform.verification.driven.written import formula_check
 from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.parametric.verify import verify_cases
 from closedform.verification.record import Check, VerificationRecord
@@ -74,12 +75,12 @@ def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterato
     yield from reduction_checks(setting)
     yield from exact_checks(setting)
     yield stability_check(setting)
-    yield resonance_check(setting)
+    yield resonance_check(replace(setting, model=response.model))  # inputs that repeat too
     yield from steady_checks(setting)
     yield from phasor_checks(setting)
     yield formula_check(setting)
     if isinstance(response.stacked, ParametricResponse):
-        yield defined_check(response.stacked, setting)
+        yield from defined_checks(response.stacked, setting)
     for single, functions, written in period_settings(response, solution):
         places = [k for k, r in enumerate(repeats) if r == functions.repeat]
         own = (*declared_check(single, places, single.last), *exact_checks(single))

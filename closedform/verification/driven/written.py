@@ -11,16 +11,14 @@ from closedform.notation import enclose as enclose_formula
 from closedform.notation import plain, read_signal_formula
 from closedform.notation.errors import FormulaError, UndeclaredNameError
 from closedform.notation.expression import Expression
-from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared
 from closedform.verification.driven.grounds import Ground
 from closedform.verification.driven.setting import Setting
 from closedform.verification.driven.stepping import Steps
 from closedform.verification.driven.sums import Enclose, TimedSum
-from closedform.verification.parametric.defined import divisor_check, divisors_in
 from closedform.verification.record import Check
 
-__all__ = ["defined_check", "formula_check"]
+__all__ = ["formula_check", "formulas_of"]
 
 _ITEM = "driven formulas as written"
 
@@ -65,19 +63,11 @@ def formula_check(setting: Setting) -> Check:
     )
 
 
-def defined_check(response: ParametricResponse, setting: Setting) -> Check:
-    """No divisor in the driven formulas of a case vanishes."""
-    case = setting.solution.case
-    if case is None:
-        raise ValueError("without parameters no divisor is open")
-
-    def divisors() -> Iterator[Expression]:
-        for k in range(setting.last + 1):
-            written = _read_back(dict(_written(setting, k)), setting.model.time, setting.names)
-            for own in written.values():
-                yield from divisors_in(own.formula)
-
-    return divisor_check("driven formulas defined", response, case, divisors)
+def formulas_of(setting: Setting) -> Iterator[Expression]:
+    """Yield every formula of the solution, in the intervals and for all times."""
+    for k in range(setting.last + 1):
+        for _, own in _written(setting, k):
+            yield own.formula
 
 
 def _read_back(
