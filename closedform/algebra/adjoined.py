@@ -16,7 +16,7 @@ says so.  Rational multiples of pi have algebraic cosines, which are adjoined as
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from functools import cached_property, reduce
 from itertools import combinations
@@ -300,11 +300,22 @@ _COSINES: tuple[dict[int, Fraction], ...] = (
 """cos(k pi/12) for k = 0 … 6, by square roots."""
 
 
-def adjoined(field: BaseField, exponents: Iterable[Scalar], angles: Iterable[Pair]) -> Adjoined:
-    """Return a field with e^g for the exponents g, and with C and S for the angles (D, d)."""
+def adjoined(
+    field: BaseField,
+    exponents: Iterable[Scalar],
+    angles: Iterable[Pair],
+    *,
+    merged: bool = True,
+) -> Adjoined:
+    """Return a field with e^g for the exponents g, and with C and S for the angles (D, d).
+
+    If not `merged`, every angle has a name of its own: equal numbers may then have several
+    forms, some of which are shorter.
+    """
     numbers: list[AdjoinedNumber] = []
     own = [] if isinstance(field, ParameterField) else list(field.radicands)
-    of_exponents = _basis(field, [g for g in exponents if g])
+    powers = [g for g in exponents if g]
+    of_exponents = _turned(_basis(field, powers), powers)
     exponent_names = tuple(f"@exp{k}" for k in range(1, len(of_exponents.elements) + 1))
     for name, element in zip(exponent_names, of_exponents.elements, strict=True):
         numbers.append(AdjoinedNumber(name, "exp", element))
@@ -316,7 +327,7 @@ def adjoined(field: BaseField, exponents: Iterable[Scalar], angles: Iterable[Pai
         turns += [pi_part] if pi_part else []
     held, count = [], 0
     for core, rests in by_core.items():
-        basis = _basis(field, [rest for rest in rests if rest])
+        basis = _basis(field, [rest for rest in rests if rest], merged=merged)
         names = []
         for element in basis.elements:
             count += 1
@@ -343,18 +354,27 @@ def adjoined(field: BaseField, exponents: Iterable[Scalar], angles: Iterable[Pai
 
 @dataclass(frozen=True)
 class _Basis:
-    """A basis of the sums of elements of a field: `rows` are those elements as vectors."""
+    """A basis of the sums of elements of a field: `rows` are those elements as vectors.
+
+    If not `merged` there is an element, or its opposite, for each that is asked for.
+    """
 
     field: BaseField
     below: Any
     keys: tuple[Any, ...]
     rows: tuple[tuple[Fraction, ...], ...]
     elements: tuple[Scalar, ...]
+    merged: bool = True
 
     def counts(self, element: Scalar) -> tuple[int, ...]:
         """Return the whole numbers by which the basis adds up to an element."""
         vector = _vector(self.field, element, self.below)
         left = [vector.pop(key, Fraction(0)) for key in self.keys]
+        if not self.merged:
+            opposite = tuple(-c for c in left)
+            return tuple(
+                int(row == tuple(left)) - int(any(row) and row == opposite) for row in self.rows
+            )
         found = []
         for row in self.rows:
             pivot = next(k for k, entry in enumerate(row) if entry)
@@ -368,8 +388,11 @@ class _Basis:
         return tuple(found)
 
 
-def _basis(field: BaseField, elements: Sequence[Scalar]) -> _Basis:
-    """Return a basis of what elements add up to, in Hermite's normal form."""
+def _basis(field: BaseField, elements: Sequence[Scalar], *, merged: bool = True) -> _Basis:
+    """Return a basis of what elements add up to, in Hermite's normal form.
+
+    If not `merged` it is the elements themselves, one of each sign.
+    """
     below = None
     if isinstance(field, ParameterField):
         below = field.domain.one.denom
@@ -379,6 +402,8 @@ def _basis(field: BaseField, elements: Sequence[Scalar]) -> _Basis:
     keys = tuple(sorted({key for vector in vectors for key in vector}, reverse=True))
     if not vectors:
         return _Basis(field, below, keys, (), ())
+    if not merged:
+        return _each(field, below, keys, vectors)
     scale = lcm(*(c.denominator for vector in vectors for c in vector.values()))
     whole = [[int(v.get(key, Fraction(0)) * scale) for key in keys] for v in vectors]
     reduced = fmpz_mat(whole).hnf()
@@ -387,9 +412,38 @@ def _basis(field: BaseField, elements: Sequence[Scalar]) -> _Basis:
         entries = [Fraction(int(reduced[i, k]), scale) for k in range(reduced.ncols())]
         if any(entries):
             rows.append(tuple(entries))
-    return _Basis(
-        field, below, keys, tuple(rows), tuple(_element(field, keys, r, below) for r in rows)
+    elements_of = tuple(_element(field, keys, r, below) for r in rows)
+    return _Basis(field, below, keys, tuple(rows), elements_of)
+
+
+def _turned(basis: _Basis, elements: Sequence[Scalar]) -> _Basis:
+    """The basis with opposites of those that occur with a minus alone: e^(-T), not 1/e^T."""
+    counts = [basis.counts(element) for element in elements]
+    signs = [-1 if all(c[k] <= 0 for c in counts) else 1 for k in range(len(basis.rows))]
+    return replace(
+        basis,
+        rows=tuple(
+            tuple(sign * c for c in row) for sign, row in zip(signs, basis.rows, strict=True)
+        ),
+        elements=tuple(
+            element * basis.field.domain.convert(sign)
+            for sign, element in zip(signs, basis.elements, strict=True)
+        ),
     )
+
+
+def _each(
+    field: BaseField, below: Any, keys: tuple[Any, ...], vectors: Sequence[dict[Any, Fraction]]
+) -> _Basis:
+    rows: list[tuple[Fraction, ...]] = []
+    for vector in vectors:
+        row = tuple(vector.get(key, Fraction(0)) for key in keys)
+        if next(c for c in row if c) < 0:
+            row = tuple(-c for c in row)
+        if row not in rows:
+            rows.append(row)
+    elements = tuple(_element(field, keys, row, below) for row in rows)
+    return _Basis(field, below, keys, tuple(rows), elements, merged=False)
 
 
 def _vector(field: BaseField, element: Scalar, below: Any) -> dict[Any, Fraction]:

@@ -15,7 +15,7 @@ determinants; the one below is the same for all of a block, and has to be other 
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 from closedform.algebra.adjoined import Adjoined, Recorder, adjoined
@@ -68,7 +68,8 @@ class PointSolution:
 
     `basis` are motions e^(A (t - origin)) column, of which constant by constant adds up to it;
     `values` are the constants, elements of `numbers.field`; `initial` are the states at the
-    start, before an impulse there.
+    start, before an impulse there.  `other` is the same with a name for every number, where
+    fewer names do for them: it may be shorter to write.
     """
 
     numbers: Adjoined
@@ -76,6 +77,7 @@ class PointSolution:
     blocks: tuple[Block, ...]
     values: tuple[Scalar, ...]
     initial: tuple[Scalar, ...]
+    other: PointSolution | None = None
 
     @cached_property
     def initial_in_field(self) -> tuple[Scalar, ...] | None:
@@ -166,22 +168,42 @@ class _Conditions:
         for origin, column in basis:  # for the states at the start
             self._states(recorder, origin, column, self.start)
         self._particular_states(recorder)
-        numbers = adjoined(self.field, recorder.exponents, recorder.angles)
+        asked = (self.field, recorder.exponents, recorder.angles)
+        numbers = adjoined(*asked)
+        found = self._found(numbers, basis, blocks)
+        if any(self._vanishes(numbers, b.determinant) for b in found.blocks):
+            self._refuse(by_instant)
+        found = self._with_values(found)
+        apart = adjoined(*asked, merged=False)
+        if len(apart.numbers) > len(numbers.numbers):
+            other = self._with_values(self._found(apart, basis, blocks))
+            found = replace(found, other=other)
+        return found
+
+    def _found(
+        self,
+        numbers: Adjoined,
+        basis: tuple[tuple[Scalar, FieldMatrix], ...],
+        blocks: Sequence[tuple[list[int], list[int]]],
+    ) -> PointSolution:
+        """The equations, not solved yet."""
         matrix, right = self._entries(numbers, basis)
         found = [self._block(numbers, matrix, right, *places) for places in blocks]
-        if any(self._vanishes(numbers, b.determinant) for b in found):
-            self._refuse(by_instant)
+        return PointSolution(numbers, basis, tuple(found), (), ())
+
+    def _with_values(self, found: PointSolution) -> PointSolution:
+        """The equations solved."""
+        numbers = found.numbers
         values = [self.field.domain.zero] * self.n
-        for block in found:
+        for block in found.blocks:
             for k, value in zip(block.constants, _cramer(numbers, block), strict=True):
                 values[k] = value
         states = self._particular_states(numbers)
-        for (origin, column), value in zip(basis, values, strict=True):
+        for (origin, column), value in zip(found.basis, values, strict=True):
             own = self._states(numbers, origin, column, self.start)
             states = [x + value * y for x, y in zip(states, own, strict=True)]
-        return PointSolution(
-            numbers, basis, tuple(found), tuple(values), tuple(map(numbers.normal, states))
-        )
+        initial = tuple(map(numbers.normal, states))
+        return replace(found, values=tuple(values), initial=initial)
 
     # The free motions of which x_h is put together
 

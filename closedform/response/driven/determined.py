@@ -94,7 +94,9 @@ class PointConstants:
     def worked_in(self, columns: Rows, functions: DrivenFunctions) -> Rows:
         """Return the formulas of the columns, each times the constant that belongs to it."""
         known = {c.name: c.formula if c.put_in else Name(c.name) for c in self.constants}
-        fronts = {s.place: known[s.constant.named] for s in functions.free if s.constant.named}
+        summands = [*functions.free, *(functions.steady or ()), *(functions.transient or ())]
+        summands += [s for interval in functions.intervals for s in interval.summands]
+        fronts = {s.place: known[s.constant.named] for s in summands if s.constant.named}
         return tuple(
             tuple(
                 multiplied(fronts[place], with_hyperbolic(formula))
@@ -202,13 +204,12 @@ def written(found: PointSolution, names: Sequence[str], case: Case | None) -> Po
     Raises UnsettledError where a determinant that is a number is not told from zero.
     """
     writer = PointWriter(found.numbers, case)
-    constants = []
-    for name, value in zip(names, found.values, strict=True):
-        if name:
-            formula = writer.formula(value)
-            constants.append(
-                PointConstant(name, value, formula, operations(formula) <= LONGEST_PUT_IN)
-            )
+    constants = _constants(found, names, writer)
+    if found.other is not None:
+        second = PointWriter(found.other.numbers, case)
+        others = _constants(found.other, names, second)
+        if _length(others) < _length(constants):
+            found, writer, constants = found.other, second, others
     arguments: list[SignArgument | None] = []
     provided: list[Expression] = []
     domain = None if case is None else _with_numbers(found.numbers, writer, case.domain)
@@ -226,7 +227,23 @@ def written(found: PointSolution, names: Sequence[str], case: Case | None) -> Po
             formula = _bare(formula)
             if formula not in provided:
                 provided.append(formula)
-    return PointConstants(found, writer, tuple(constants), tuple(arguments), tuple(provided))
+    return PointConstants(found, writer, constants, tuple(arguments), tuple(provided))
+
+
+def _constants(
+    found: PointSolution, names: Sequence[str], writer: PointWriter
+) -> tuple[PointConstant, ...]:
+    constants = []
+    for name, value in zip(names, found.values, strict=True):
+        if name:
+            formula = writer.formula(value)
+            put_in = operations(formula) <= LONGEST_PUT_IN
+            constants.append(PointConstant(name, value, formula, put_in))
+    return tuple(constants)
+
+
+def _length(constants: Sequence[PointConstant]) -> int:
+    return sum(operations(c.formula) for c in constants)
 
 
 def _open_part(domain: ParameterDomain, determinant: Scalar) -> Scalar:
