@@ -216,7 +216,7 @@ def test_other_initial_values_are_refuted(kind: str) -> None:
         initial = list(response.model.initial or ())
         initial[place] = value + one
         spoiled = with_model(response, initial=tuple(initial))
-        check = initial_check(setting_to(spoiled))
+        (check,) = initial_check(setting_to(spoiled))
         assert check.outcome == "refuted"
         assert stacked_check(spoiled.model).outcome == "refuted"
         assert formula_check(setting_to(spoiled)).outcome == "refuted"
@@ -231,7 +231,8 @@ def test_other_stated_values_are_refuted(kind: str) -> None:
         stated = list(response.model.stated_initial)
         stated[place] = (jet, value + one)
         spoiled = with_model(response, stated_initial=tuple(stated))
-        assert initial_check(setting_to(spoiled)).outcome == "refuted"
+        (check,) = initial_check(setting_to(spoiled))
+        assert check.outcome == "refuted"
 
 
 # --- the model -----------------------------------------------------------------------------
