@@ -7,6 +7,7 @@ from dataclasses import replace
 
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.parametric.response import ParametricResponse
+from closedform.verification.driven.boundary import conditions_check
 from closedform.verification.driven.declared import declared_check
 from closedform.verification.driven.defined import defined_checks
 from closedform.verification.driven.equations import balance_check, rows_check, state_form_check
@@ -99,6 +100,8 @@ def exact_checks(setting: Setting) -> Iterator[Check]:
     yield state_form_check(setting)
     yield from rows_check(setting)
     yield from initial_check(setting)
+    if setting.model.conditions:
+        yield conditions_check(setting)
     yield from point_check(setting)
     yield from join_check(setting)
     yield free_forced_check(setting)
