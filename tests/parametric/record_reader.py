@@ -169,9 +169,16 @@ def _root_part(entry: Mapping[str, Any], known: Values) -> Number:
     which = entry["which"]
     if not 1 <= which <= len(roots):
         raise DisagreementError(f"there is no root {which} among {len(roots)}")
-    root = roots[which - 1]
-    part: arb = root.real if entry["part"] == "real" else root.imag
-    return part
+    value, weight = roots[which - 1], arb(1)
+    if "numerator" in entry:
+        above, beside = (
+            acb_poly([ball_of(_evaluated(text, known)) for text in reversed(entry[key])])
+            for key in ("numerator", "beside")
+        )
+        slope = acb_poly([ball_of(c) for c in reversed(coefficients)]).derivative()
+        value, weight = above(value) / (slope(value) * beside(value)), arb(entry["weight"])
+    part: arb = value.real if entry["part"] == "real" else value.imag
+    return part * weight
 
 
 def _ordered_roots(coefficients: Sequence[Number]) -> list[acb]:
