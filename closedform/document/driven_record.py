@@ -8,13 +8,14 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from typing import Any
 
+from closedform.algebra.enclosure import certified_decimal
 from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.derivation.driven.signals import waves_formula
 from closedform.derivation.driven.writing import Writing
 from closedform.document.driven_parts import in_rows, input_names, parts_of
 from closedform.document.numeric_record import numeric_record
 from closedform.document.parametric_record import checks_as_data, parametric_record
-from closedform.model.driven.model import DrivenModel, Input
+from closedform.model.driven.model import DrivenModel, Input, PointCondition
 from closedform.model.driven.signal import Burst, Impulse, Repeat
 from closedform.notation.expression import (
     ONE,
@@ -31,6 +32,7 @@ from closedform.notation.terms import negated, opened, sum_of, surd_formula
 from closedform.response.driven.composition import scaled, shifted
 from closedform.response.driven.numbers import DrivenNumbersAt
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
+from closedform.response.driven.sampling import point_balls
 from closedform.response.parametric.response import ParametricResponse
 from closedform.response.response import Response
 from closedform.verification.parametric.record import CaseRecords
@@ -57,6 +59,13 @@ def driven_record(
             written = _head(response.model, below)
             (solution,) = response.solutions
             written |= _solved(solution)
+            written["names"] |= {
+                name: {
+                    "definition": {"formula": formula},
+                    "value": _decimal(solution, name, digits),
+                }
+                for name, formula in _constants(solution).items()
+            }
             written["stacked"] |= _taken(below, "eigenvalues", "transition", "spectral")
             written["verification"] = checks_as_data(record)
             return written
@@ -99,7 +108,7 @@ def _head(model: DrivenModel, below: dict[str, Any]) -> dict[str, Any]:
     if model.initial is not None:
         written["initial"] = _texts(writing, model.initial)
     if model.conditions:
-        written["at_points"] = [condition.text for condition in model.conditions]
+        written["at_points"] = [_condition(writing, own) for own in model.conditions]
     written |= _taken(below, "parameters", "restated", "conditions", "names")
     written["stacked"] = _taken(below, "states", "matrix", "initial", "characteristic_polynomial")
     return written
@@ -108,7 +117,10 @@ def _head(model: DrivenModel, below: dict[str, Any]) -> dict[str, Any]:
 def _case(solution: DrivenSolution, below: dict[str, Any]) -> dict[str, Any]:
     return {
         "condition": below["condition"],
-        "names": below["names"],
+        "names": {
+            **below["names"],
+            **{name: {"definition": text} for name, text in _constants(solution).items()},
+        },
         **_solved(solution),
         "stacked": _taken(below, "eigenvalues", "transition"),
         "verification": below["verification"],
@@ -132,6 +144,26 @@ def _solved(solution: DrivenSolution) -> dict[str, Any]:
         "stability": stability.verdict,
         **in_rows(solution.model, solution.solution),
         **parts_of(solution),
+    }
+
+
+def _constants(solution: DrivenSolution) -> dict[str, str]:
+    """The constants that conditions at points determine and that formulas name."""
+    points = () if solution.points is None else solution.points.constants
+    return {c.name: plain(c.formula) for c in points if not c.put_in}
+
+
+def _decimal(solution: DrivenSolution, name: str, digits: int) -> str:
+    return certified_decimal(lambda: point_balls(solution)[name], digits)
+
+
+def _condition(writing: Writing, own: PointCondition) -> dict[str, Any]:
+    at, value = _texts(writing, (own.at, own.value))
+    return {
+        "written": own.text,
+        "at": at,
+        "of_states": _texts(writing, own.of_states),
+        "value": value,
     }
 
 

@@ -12,6 +12,7 @@ import pytest
 
 from closedform.algebra.surds import SurdSum
 from closedform.document.record import DIGITS, record_of, record_text
+from closedform.model.building import model_from
 from closedform.model.parametric import ValueSet
 from closedform.response.driven.numbers import driven_numbers_at
 from closedform.response.driven.response import DrivenResponse, respond_driven
@@ -43,6 +44,7 @@ PARAMETRIC = {
 VALUES: dict[str, list[dict[str, str | int]]] = {
     "pump": [given for make, given in CASES if make is pump],
     "mount": [given for make, given in CASES if make is mount],
+    "throw": [{"g": 10, "b": "1/2", "L": 3, "h": 2}],
     "blow with parameters": [{"a": "2/3", "D": 5, "T": "3/2", "q": -1, "x0": "1/2"}],
 }
 
@@ -55,12 +57,36 @@ def proofs(response: DrivenResponse) -> VerificationRecord | CaseRecords:
     return one
 
 
+ROD = {
+    "title": "A rod between two given ends",
+    "equations": ["T'' = 4*T - q"],
+    "at_points": ["T(0) = 1", "T(2) = 0"],
+    "inputs": {"q": "3*t"},
+}
+BEAM = {
+    "title": "A beam on soft ground",
+    "equations": ["y'''' + 5*y'' + 4*y = q"],
+    "at_points": ["y(0) = 0", "y''(0) = 0", "y(1) = 0", "y''(1) = 1/7"],
+    "inputs": {"q": "cos(3*t)"},
+}
+THROW = {
+    "title": "A throw that has to hit",
+    "equations": ["x' = v - x/10", "v' = -g + b*delta(t - 1)"],
+    "states": ["x", "v"],
+    "at_points": ["x(0) = 0", "x(L) = h"],
+    "parameters": {"g": "positive", "b": "real", "L": "positive", "h": "real"},
+    "conditions": ["L > 1"],
+}
+POINTS = {
+    name: model_from(stated, name="points")
+    for name, stated in {"rod": ROD, "beam": BEAM, "throw": THROW}.items()
+}
 REPEATED = {"for ever": repeated(None), "three times": repeated(3)}
 
 
 @cache
 def stored(name: str) -> Record:
-    response = respond_driven((MODELS | PARAMETRIC | REPEATED)[name])
+    response = respond_driven((MODELS | PARAMETRIC | REPEATED | POINTS)[name])
     numbers = [
         driven_numbers_at(
             response,
@@ -73,13 +99,13 @@ def stored(name: str) -> Record:
     return record
 
 
-@pytest.mark.parametrize("name", [*MODELS, *PARAMETRIC, *REPEATED])
+@pytest.mark.parametrize("name", [*MODELS, *PARAMETRIC, *REPEATED, *POINTS])
 def test_a_record_is_as_the_schema_says_and_its_formulas_read_back(name: str) -> None:
     VALIDATOR.validate(stored(name))
     check_driven_texts(stored(name))
 
 
-@pytest.mark.parametrize("name", [*MODELS, *REPEATED])
+@pytest.mark.parametrize("name", [*MODELS, *REPEATED, "rod", "beam"])
 def test_the_solution_in_the_record_is_the_solution_of_what_is_stated_there(name: str) -> None:
     assert check_driven_record(stored(name)) == 1
 
@@ -104,6 +130,7 @@ SPOILT: list[tuple[str, Callable[[Record], object]]] = [
     ("blow", lambda r: r["free"]["solution"].__setitem__(0, "0")),
     ("blow", lambda r: r["steady_state"]["solution"].__setitem__(0, "1/5")),
     ("integrator", lambda r: r["instants"].pop()),
+    ("rod", lambda r: r["at_points"][1].update(value="1")),
     (
         "later start",
         lambda r: r["steady_state"]["sinusoids"]["x1"]["terms"][0].update(amplitude="1"),

@@ -187,6 +187,8 @@ def _check(record: Record, case: Record, known: Mapping[str, Number]) -> None:
     if len(pieces) != len(instants):
         raise DisagreementError(f"{len(instants)} intervals, but {len(pieces)} pieces")
     here.starts(pieces[0], instants[0])
+    for condition in record.get("at_points", ()):
+        here.meets(condition, pieces, instants)
     for (before, after), at in zip(pairwise(pieces), instants[1:], strict=True):
         here.joins(before, after, at)
     for k, (piece, begun) in enumerate(zip(pieces, instants, strict=True)):
@@ -238,6 +240,18 @@ class _Case:
             self.same(self.values(first["solution"], start), expected, "the start")
             free = self.values(self.case["free"]["solution"], start)
             self.same(free, stated, "the free response at the start")
+
+    def meets(
+        self, condition: Record, pieces: Sequence[Record], instants: Sequence[Number]
+    ) -> None:
+        """A condition holds at its instant, just before what strikes there."""
+        at = self.number(condition["at"])
+        begun = [k for k, start in enumerate(instants) if ball_of(_add(at, -start)) > 0]
+        states = self.values(pieces[max(begun, default=0)]["solution"], at)
+        if not begun:
+            states = _sums(states, [-x for x in self.blows(at)])
+        found = _times([[self.number(w) for w in condition["of_states"]]], states)
+        self.same(found, [self.number(condition["value"])], condition["written"])
 
     def joins(self, before: Record, after: Record, at: Number) -> None:
         """At a switching the states go on, but for what impulses add."""
@@ -352,7 +366,8 @@ class _Periodic:
     def check(self) -> None:
         here, count = self.here, self.own.get("count")
         here.same(self.states(0, 1, Fraction(0)), self.blows(Fraction(0)), "the first period")
-        shown = [n for n in PERIODS if count is None or n <= count]
+        shown = [n for n in PERIODS if count is None or n < count]
+        shown += [] if count is None else [count]
         for n in shown:
             for place, (low, high) in enumerate(zip(self.bounds, self.ends, strict=True)):
                 for share in SHARES:

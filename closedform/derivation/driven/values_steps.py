@@ -26,8 +26,8 @@ def driven_values_step(
 ) -> Step:
     """Tabulate certified values at the instants asked for, or at some that suit."""
     model, functions = writing.model, solution.functions
-    times = model.times or default_instants(model.field, functions, solution.periods)
-    decimals = sampled_rows(model.field, functions, times, digits, periods=solution.periods)
+    times = model.times or default_instants(solution)
+    decimals = sampled_rows(solution, times, digits)
     shown = range(len(model.rows))
     told = {
         **facts,

@@ -37,14 +37,23 @@ _Complex = tuple[Scalar, Scalar]
 
 def exact_value(solution: InField, row: int, spots: Sequence[Spot], t: SurdSum) -> SurdSum | None:
     """Return a row at t, in these spots, as a surd sum, or None if none is found."""
-    sums = _Sums(solution.field)
+    field = solution.field
+    at = field.scalar(t)
+    for instant, place, value in solution.fixed:
+        if place == row and not at - instant:
+            return field.number(value)
+    sums = {"": _Sums(field)}
     for spot in spots:
         part = solution.parts[spot.part]
         for summand in part.intervals[spot.interval].summands:
             since = solution.since(spot, summand.origin, t)
+            beside = sums.setdefault(summand.constant.named, _Sums(field))
             for term in part.terms:
-                sums.add(term, row, summand.place, since, summand.constant)
-    return sums.value()
+                beside.add(term, row, summand.place, since, summand.constant)
+    named = [own.value() for name, own in sums.items() if name]
+    if any(value is None or not value.is_zero for value in named):
+        return None  # the constants that conditions determine are not looked into
+    return sums[""].value()
 
 
 @dataclass

@@ -15,7 +15,6 @@ from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.roots import enclosed_roots
 from closedform.algebra.surds import SurdSum
 from closedform.algebra.value_field import FieldWithPi, element_at, value_field
-from closedform.algebra.waves import Constant
 from closedform.notation.terms import square_root_of_surd
 from closedform.response.driven.functions import DrivenFunctions, Interval, Summand
 from closedform.response.driven.periodic import PeriodFunctions
@@ -73,11 +72,13 @@ class InField:
 
     All numbers are elements of `field`: those of the terms, the instants, the origins and
     the constants of the intervals, and the instants of the time that were named.  The first
-    part is all but inputs that repeat, the others are one period of these each.
+    part is all but inputs that repeat, the others are one period of these each.  `fixed` are
+    values that conditions state: an instant, a row and the value.
     """
 
     field: BaseField
     parts: tuple[FieldPart, ...]
+    fixed: tuple[tuple[Scalar, int, Scalar], ...] = ()
 
     def interval_at(self, t: SurdSum) -> int:
         """Return the interval of the first part at an instant; at a switching the later one."""
@@ -129,16 +130,19 @@ def in_field(
     *,
     values: Mapping[str, SurdSum] | None = None,
     times: Iterable[SurdSum] = (),
+    fixed: Sequence[tuple[Scalar, int, Scalar]] = (),
 ) -> InField:
     """Return the functions of a solution over the field of their numbers.
 
     `source` is the field of the model; `values` gives each parameter of it a value, and is
-    not needed without any.  `times` are those at which values will be asked for.
+    not needed without any.  `times` are those at which values will be asked for, `fixed` the
+    values that conditions state.
     Raises TooManyRootsError where all of these need too large a field.
     """
     parts = [functions, *(own.single for own in periods)]
     elements = [e for part in parts for e in _elements(part)]
     elements += [own.repeat.period for own in periods]
+    elements += [e for at, _, value in fixed for e in (at, value)]
     instants, given = list(times), dict(values or {})
     small = _field_of(source, elements, given, instants)
     roots = _roots_of_discriminants(small, functions, _into(source, small, given))
@@ -155,7 +159,8 @@ def in_field(
         replace(part, period=put(own.repeat.period), count=own.repeat.count)
         for part, own in zip(made[1:], periods, strict=True)
     ]
-    return InField(field, (made[0], *repeated))
+    stated = tuple((put(at), row, put(value)) for at, row, value in fixed)
+    return InField(field, (made[0], *repeated), stated)
 
 
 def root_in(field: BaseField, square: Scalar) -> Scalar | None:
@@ -230,7 +235,7 @@ def _interval(own: Interval, put: Callable[[Scalar], Scalar]) -> Interval:
             Summand(
                 s.place,
                 put(s.origin),
-                Constant(put(s.constant.growth), s.constant.kernel, put(s.constant.angle)),
+                replace(s.constant, growth=put(s.constant.growth), angle=put(s.constant.angle)),
             )
             for s in own.summands
         ),

@@ -20,8 +20,9 @@ from closedform.notation.terms import opened, sum_of
 from closedform.response.driven.composition import constant_formula, element_formula, shifted
 from closedform.response.driven.exact_sum import exact_value
 from closedform.response.driven.functions import Interval
-from closedform.response.driven.in_field import InField, in_field
+from closedform.response.driven.in_field import InField
 from closedform.response.driven.instants import suitable_instants
+from closedform.response.driven.put_in import put_in, with_constants
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.driven.written_values import written_balls
 from closedform.response.parametric.in_numbers import InNumbers, in_numbers
@@ -93,18 +94,19 @@ def driven_numbers_at(
     field, values = stacked.model.field, dict(given.values)
     case = case_at(stacked, given)
     solution = response.solutions[case.number]
-    known = known_at(field, case, values)
-    parts = (solution.functions, solution.periods)
-    instants = tuple(times) or suitable_instants(in_field(field, *parts, values=values))
-    exact = in_field(field, *parts, values=values, times=instants)
+    known = with_constants(solution, known_at(field, case, values))
+    instants = tuple(times) or suitable_instants(put_in(solution, values))
+    exact = put_in(solution, values, instants)
+    points = () if solution.points is None else solution.points.constants
+    names = [*(q.name for q in case.quantities), *(c.name for c in points if not c.put_in)]
     writer = _Writer(field, solution, known, digits)
     return DrivenNumbersAt(
         given.label,
         tuple((name, values[name]) for name in field.free),
         case.number,
         tuple(
-            QuantityAt(q.name, known.exact.get(q.name), known.decimal(Name(q.name), digits))
-            for q in case.quantities
+            QuantityAt(name, known.exact.get(name), known.decimal(Name(name), digits))
+            for name in names
         ),
         tuple(writer.number(interval.start) for interval in solution.functions.intervals),
         tuple(

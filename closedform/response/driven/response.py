@@ -29,7 +29,6 @@ from closedform.response.driven.composition import (
 )
 from closedform.response.driven.determined import determined, names_of_constants, written
 from closedform.response.driven.functions import DrivenFunctions
-from closedform.response.driven.in_field import in_field
 from closedform.response.driven.particular import beside
 from closedform.response.driven.period_formulas import periodic_solution
 from closedform.response.driven.periodic import (
@@ -38,6 +37,7 @@ from closedform.response.driven.periodic import (
     repeating,
     without_repeats,
 )
+from closedform.response.driven.put_in import put_in, with_constants
 from closedform.response.driven.resonance import Resonance, resonances_of
 from closedform.response.driven.sampling import enclosed_at
 from closedform.response.driven.solution import DrivenSolution
@@ -132,15 +132,15 @@ class DrivenResponse:
         at, stacked = SurdSum.rational(t), self.stacked
         if not isinstance(stacked, ParametricResponse):
             (own,) = self.solutions
-            return enclosed_at(self.model.field, own.functions, at, digits, periods=own.periods)
+            return enclosed_at(own, at, digits)
         given = {name: SurdSum.rational(value) for name, value in (values or {}).items()}
         missing = [name for name in stacked.model.field.free if name not in given]
         if missing:
             raise ValueError(f"no value is given for {', '.join(missing)}")
         case = case_at(stacked, ValueSet("", tuple(given.items())))
         own = self.solutions[case.number]
-        known = known_at(stacked.model.field, case, given)
-        exact = in_field(self.model.field, own.functions, own.periods, values=given, times=(at,))
+        known = with_constants(own, known_at(stacked.model.field, case, given))
+        exact = put_in(own, given, (at,))
         place, rows = (self.model.time, at), range(len(self.model.rows))
 
         def balls() -> arb_mat:

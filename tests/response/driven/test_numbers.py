@@ -93,8 +93,7 @@ def test_decimals_are_those_of_the_model_in_numbers(
 ) -> None:
     found = numbers(make, given)
     model = make({name: Fraction(value) for name, value in given.items()})
-    functions = respond_driven(model).solutions[0].functions
-    expected = sampled_rows(model.field, functions, found.times, 10)
+    expected = sampled_rows(respond_driven(model).solutions[0], found.times, 10)
     assert [list(row) for row in found.rows] == expected
 
 

@@ -175,8 +175,7 @@ def test_the_nth_period_is_that_of_copies_stated_one_by_one(kind: str) -> None:
             for share in (Fraction(0), Fraction(2, 7), Fraction(9, 10)):
                 local = start + share * (end - start)
                 t = period * (n - 1) + local
-                (functions,) = (s.functions for s in copies.solutions)
-                expected = enclosed_at(copies.model.field, functions, SurdSum.rational(t), 25)
+                expected = enclosed_at(copies.solutions[0], SurdSum.rational(t), 25)
                 own = {**known, periodic.number: ball(n), periodic.local: ball(local)}
                 found = [value(row, own) for row in stretch.rows]
                 for row in range(len(model.names)):
@@ -192,7 +191,7 @@ def test_after_the_last_period_too(kind: str) -> None:
     assert periodic.after is not None
     assert periodic.steady is periodic.begins is None
     t = Fraction(ONE_PERIOD[kind]["period"] * 3) + Fraction(5, 3)
-    expected = enclosed_at(copies.model.field, copies.solutions[0].functions, t, 25)
+    expected = enclosed_at(copies.solutions[0], t, 25)
     with ctx.workprec(256):
         known = {n: b.real for n, b in constant_values(stacked.closed_forms.constants).items()}
     for formula, own in zip(periodic.after, expected, strict=True):

@@ -12,8 +12,8 @@ from closedform.algebra.surds import SurdSum
 from closedform.model.driven.model import DrivenModel
 from closedform.model.driven.signal import Burst, Impulse, Repeat, Signal
 from closedform.model.parametric import ValueSet
-from closedform.response.driven.in_field import in_field
 from closedform.response.driven.numbers import driven_numbers_at
+from closedform.response.driven.put_in import put_in
 from closedform.response.driven.response import respond_driven
 from closedform.response.driven.sampling import default_instants, sampled_rows
 from tests.response.driven.stated import Element, numeric, parametric, wave
@@ -54,7 +54,7 @@ def unrolled(count: int) -> DrivenModel:
 def rows_of(model: DrivenModel, times: list[Fraction]) -> list[list[str]]:
     solution = respond_driven(model).solutions[0]
     instants = [SurdSum.rational(t) for t in times]
-    return sampled_rows(model.field, solution.functions, instants, 9, periods=solution.periods)
+    return sampled_rows(solution, instants, 9)
 
 
 @pytest.mark.parametrize("count", [1, 2, 4])
@@ -82,9 +82,7 @@ def test_written_formulas_have_the_same_values(count: int | None) -> None:
 def test_instants_show_parts_of_the_first_periods_and_what_comes_after(count: int | None) -> None:
     model = repeated(count)
     solution = respond_driven(model).solutions[0]
-    times = [
-        t.as_fraction() for t in default_instants(model.field, solution.functions, solution.periods)
-    ]
+    times = [t.as_fraction() for t in default_instants(solution)]
     assert times[0] == 0
     assert times == sorted(set(times))
     shown = {t for t in times if t < PERIOD * min(count or 2, 2)}
@@ -96,12 +94,10 @@ def test_instants_show_parts_of_the_first_periods_and_what_comes_after(count: in
 def test_the_period_that_holds_an_instant_is_counted_exactly() -> None:
     model = repeated(3)
     solution = respond_driven(model).solutions[0]
-    exact = in_field(model.field, solution.functions, solution.periods)
+    exact = put_in(solution)
     counts = [exact.periods_at(1, SurdSum.rational(Fraction(t))) for t in ("0", "8/3", "3", "100")]
     assert counts == [1, 1, 2, 3]
-    early = in_field(
-        model.field, solution.functions, solution.periods, times=[SurdSum.rational(-1)]
-    )
+    early = put_in(solution, times=[SurdSum.rational(-1)])
     assert early.periods_at(1, SurdSum.rational(-1)) == 0
 
 
