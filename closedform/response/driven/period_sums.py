@@ -12,7 +12,15 @@ from fractions import Fraction
 
 from closedform.algebra.field import BaseField, Scalar
 from closedform.algebra.parameter_field import ParameterField
-from closedform.notation.expression import ONE, ZERO, Expression, Quotient, number
+from closedform.notation.expression import (
+    ONE,
+    ZERO,
+    Expression,
+    Negation,
+    Quotient,
+    number,
+    operations,
+)
 from closedform.notation.rational_formula import rational_formula
 from closedform.notation.terms import negated, opened, sum_of
 from closedform.response.by_mode import ModePart
@@ -141,23 +149,32 @@ class PeriodSums:
         self, shapes: Shapes, group: Group, others: Sequence[Struck], functions: Placeholders
     ) -> list[Weighted]:
         _, first = group[0]
-        held = self.writing.amounts(first.part)
-        kernels: list[Expression] = [ONE]
         if len(group) > 1:
-            front = self._together(shapes, group)
-        else:
-            pairs = [s for s in others if _shares_divisor(s, first)]
-            front, kernels = shapes.shapes(first, held, alone=len(pairs) < 2)
-            if first.constant is not None and len(pairs) < 2:
-                front = joined([first.constant, front])
-            elif first.constant is not None:
-                kernels = [joined([first.constant, kernel]) for kernel in kernels]
+            forms = []
+            for sign in (1, -1):
+                part = self.writing.scaled(first.part, sign)
+                front = self._together(shapes, [(ratio * sign, s) for ratio, s in group])
+                name = functions.name_of(front)
+                forms.append(Weighted(part, self.writing.amounts(part)[0].amount, name, None))
+            return [min(forms, key=lambda form: self._length(form, functions))]
+        held = self.writing.amounts(first.part)
+        pairs = [s for s in others if _shares_divisor(s, first)]
+        front, kernels = shapes.shapes(first, held, alone=len(pairs) < 2)
+        if first.constant is not None and len(pairs) < 2:
+            front = joined([first.constant, front])
+        elif first.constant is not None:
+            kernels = [joined([first.constant, kernel]) for kernel in kernels]
         name = functions.name_of(front)
         return [
             Weighted(first.part, own.amount, name, functions.name_of(kernel))
             for own, kernel in zip(held, kernels, strict=True)
             if kernel != ZERO
         ]
+
+    def _length(self, weighted: Weighted, functions: Placeholders) -> tuple[int, bool]:
+        """The operations of a formula; of equals, the one without a sign outside comes first."""
+        formula = put_in(self.writing.sum([weighted]), functions.found)
+        return operations(formula), isinstance(formula, Negation)
 
     @staticmethod
     def _together(shapes: Shapes, group: Group) -> Expression:

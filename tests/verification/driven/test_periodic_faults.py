@@ -17,6 +17,7 @@ from closedform.response.driven.response import respond_driven
 from closedform.verification.driven.periodic import periodic_checks
 from closedform.verification.driven.periods import period_settings
 from closedform.verification.driven.setting import Setting
+from closedform.verification.driven.verify import verify_driven
 from tests.verification.driven.made import stated
 
 KINDS: dict[str, dict[str, Any]] = {
@@ -48,6 +49,19 @@ KINDS: dict[str, dict[str, Any]] = {
         "parameters": {"w": "positive"},
         "inputs": {"F": {"is": "delta(t)", "period": "2*pi/w"}},
         "initial": {"x": 0, "x'": 0},
+    },
+    "infusions, added up": {
+        "equations": ["c' = -k*c + q/V", "w' = c"],
+        "parameters": dict.fromkeys(("k", "V", "R", "h", "T"), "positive"),
+        "conditions": ["h < T"],
+        "inputs": {
+            "q": {
+                "pieces": [{"from": "2", "to": "2 + h", "is": "R/h"}],
+                "period": "T",
+                "start": "2",
+            }
+        },
+        "initial": {"c": 0, "w": 1},
     },
     "a rate of any sign": {
         "equations": ["x' = a*x + u"],
@@ -81,6 +95,12 @@ def test_what_is_right_is_proved(kind: str) -> None:
         ends, divisors = outcomes(setting, written)
         assert ends == "enclosed"
         assert divisors == ("enclosed" if written.provided else "proved")
+
+
+@each_kind
+def test_the_whole_record_holds(kind: str) -> None:
+    records = verify_driven(respond_driven(stated(KINDS[kind])))
+    assert records.holds
 
 
 @each_kind
