@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 
 from closedform.algebra.field import Scalar
+from closedform.derivation.driven.boundary_steps import point_conditions
 from closedform.derivation.driven.signals import signal_side
 from closedform.derivation.driven.writing import Writing, bold, calls_in
 from closedform.derivation.proof.evaluation import expressions_in
@@ -56,7 +57,7 @@ def driven_model_step(writing: Writing) -> Step:
         "impulses": any(given.signal.impulses for given in model.inputs),
         "start": writing.element(model.start),
         "later": bool(model.start),
-        "points": [condition.text for condition in model.conditions],
+        "points": list(point_conditions(writing)),
     }
     return Step("driven_model", tuple(statements), facts, depth="summary")
 

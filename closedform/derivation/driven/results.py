@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from closedform.derivation.driven.boundary_steps import conditions_step
 from closedform.derivation.driven.closing_steps import (
     stability_step,
     steady_step,
@@ -38,9 +39,11 @@ def _steps(
     writing = Writing(response.model)
     if not solution.periodic or _moves(solution):
         yield particular_step(writing, solution, facts)
+        yield conditions_step(writing, solution, facts)
         yield jumps_step(writing, solution, facts)
         yield driven_solution_step(writing, solution, facts)
-        yield split_step(writing, solution, facts)
+        if solution.points is None:
+            yield split_step(writing, solution, facts)
     yield from periodic_steps(writing, solution, facts)
     yield stability_step(writing, solution, facts)
     if not solution.periodic:

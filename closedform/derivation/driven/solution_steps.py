@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from typing import Any
 
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
@@ -121,33 +122,44 @@ def _alike(solution: DrivenSolution) -> list[tuple[int, int, tuple[Expression, .
     return found
 
 
-def jumps_step(writing: Writing, solution: DrivenSolution, facts: dict[str, object]) -> Step:
-    """State h_j at the start and at each switching, and why."""
+def jumps_step(writing: Writing, solution: DrivenSolution, facts: dict[str, object]) -> Step | None:
+    """State h_j at the start and at each switching, and why.
+
+    Where conditions at points stand for initial values, the start is told of only if an impulse
+    strikes there; None if nothing is left to tell then.
+    """
     model, functions = writing.model, solution.functions
     instants, sustained = writing.instants(), _sustained(solution)
-    rows: list[dict[str, object]] = []
+    rows: list[dict[str, Any]] = []
     for k, jump in enumerate(functions.jumps):
         if k == 0 and model.initial is not None:
             given = [[_put(solution, value)] for value in model.initial]
             first = (UNIT(model.field), model.field.matrix(given))
             jump = gathered_columns([first, *jump])  # noqa: PLW2901  the start has more parts
-        column = list(_column(writing, jump))
         blow = _blow(writing, solution, k)
+        if k == 0 and model.initial is None and blow is None:
+            continue
+        column = list(_column(writing, jump))
         changes = k == 0 or sustained[k] != sustained[k - 1]
         vector = writing.column(column)
+        if k == 0 and model.initial is None and blow is not None:
+            vector = blow.sides[1]
         rows.append(
             {
                 "place": k,
                 "at": instants[k],
                 "changes": changes,
                 "blow": blow,
-                "zero": all(entry == ZERO for entry in column),
+                "zero": all(entry == ZERO for entry in column) and blow is None,
                 "statement": Statement("jump", (writing.jump("h", k), vector)),
             }
         )
+    if not rows:
+        return None
     told = {
         **facts,
         "rows": rows,
+        "points": model.initial is None,
         "driven": any(p.summands for p in functions.sustained),
         "apart": bool(solution.periodic),
     }
@@ -187,6 +199,8 @@ def _blow(writing: Writing, solution: DrivenSolution, place: int) -> Statement |
     totals = [model.field.domain.zero] * n
     struck = False
     for column, given in enumerate(model.inputs):
+        if given.signal.repeat is not None:
+            continue
         for impulse in given.signal.impulses:
             if impulse.at == at:
                 struck = True
@@ -198,17 +212,17 @@ def _blow(writing: Writing, solution: DrivenSolution, place: int) -> Statement |
     return Statement("blow", (writing.jump("b", place), writing.column(entries)))
 
 
-def _shape(
-    writing: Writing, solution: DrivenSolution, rows: Sequence[dict[str, object]]
-) -> Statement:
+def _shape(writing: Writing, solution: DrivenSolution, rows: Sequence[dict[str, Any]]) -> Statement:
     """x(t) = x_p(t) + e^(A (t - a_0)) h_0 + …, as many terms as are on by the end."""
     parts: list[Side] = []
     if any(part.summands for part in solution.functions.sustained):
         parts.append(writing.response("p"))
-    for row, at in zip(rows, writing.instants(), strict=True):
+    if writing.model.initial is None:
+        parts.append(writing.response("h"))
+    for row in rows:
         if not row["zero"]:
+            at, place = writing.instants()[row["place"]], row["place"]
             later = writing.t if at == ZERO else opened(sum_of([writing.t, negated(at)]))
-            place = rows.index(row)
             exponential = writing.exponential(later)
             h: tuple[Side, ...] = (writing.jump("h", place),)
             h = h if exponential == ONE else (exponential, *h)

@@ -53,6 +53,8 @@ def balance_terms(
     written = _written(response, solution, function)
     if written is None:
         return None
+    if solution.points is not None:
+        written = solution.points.worked_in(written, solution.functions)
     return tuple(
         BalanceTerm(jet, weight, interval_formula(model.field, written, k, interval, model.time))
         for k, (jet, weight) in enumerate(weighted)

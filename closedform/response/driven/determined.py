@@ -54,7 +54,14 @@ from closedform.response.driven.point_writing import (
 )
 from closedform.response.parametric.case import Case
 
-__all__ = ["PointConstant", "PointConstants", "determined", "names_of_constants", "written"]
+__all__ = [
+    "PointConstant",
+    "PointConstants",
+    "determined",
+    "names_of_constants",
+    "stem_of_constants",
+    "written",
+]
 
 LONGEST_PUT_IN = 40
 """Constants with up to so many operations are put into the solution."""
@@ -180,14 +187,17 @@ def _left(model: DrivenModel, condition: PointCondition) -> Expression:
 
 def names_of_constants(model: DrivenModel, found: PointSolution) -> tuple[str, ...]:
     """Return a name for each constant that is no element of the model's field, else ''."""
+    stem = stem_of_constants(model)
+    return tuple(
+        f"{stem}_{k}" if value is None else "" for k, value in enumerate(found.in_field, start=1)
+    )
+
+
+def stem_of_constants(model: DrivenModel) -> str:
+    """Return the letter of the constants: c, unless the model has names that begin with c_."""
     taken = {*model.rows, *model.unknowns, model.time, *(i.name for i in model.inputs)}
     taken |= set(getattr(model.field, "parameters", ()))
-    stem = next(s for s in _stems() if not any(t.startswith(f"{s}_") for t in taken))
-    names, count = [], 0
-    for value in found.in_field:
-        count += value is None
-        names.append(f"{stem}_{count}" if value is None else "")
-    return tuple(names)
+    return next(s for s in _stems() if not any(t.startswith(f"{s}_") for t in taken))
 
 
 def _stems() -> Iterator[str]:

@@ -31,6 +31,7 @@ from closedform.notation.expression import (
     factors_of,
     number,
     operations,
+    power_of,
     product,
 )
 from closedform.notation.rational_formula import rational_formula
@@ -300,17 +301,29 @@ def with_hyperbolic(formula: Expression) -> Expression:
     """Return a formula with 2 cosh(u) for e^u + e^-u, and 2 sinh(u) for their difference."""
     match formula:
         case Sum((Call("exp", up), Call("exp", down))) if negated(down) == up:
-            return Product((number(2), Call("cosh", up)))
+            inside = up.operand if isinstance(up, Negation) else up
+            return Product((number(2), Call("cosh", inside)))
         case Sum((Call("exp", up), Negation(Call("exp", down)))) if negated(down) == up:
+            if isinstance(up, Negation):
+                return Negation(Product((number(2), Call("sinh", up.operand))))
             return Product((number(2), Call("sinh", up)))
-        case Negation(inside):
-            return Negation(with_hyperbolic(inside))
+        case Negation(operand):
+            return negated(with_hyperbolic(operand))
         case Sum(terms):
-            return Sum(tuple(map(with_hyperbolic, terms)))
+            return sum_of([with_hyperbolic(term) for term in terms])
         case Product(factors):
-            return product(map(with_hyperbolic, factors))
+            signs, inside = 0, []
+            for factor in map(with_hyperbolic, factors):
+                minus = isinstance(factor, Negation)
+                signs += minus
+                inside.append(factor.operand if isinstance(factor, Negation) else factor)
+            whole = product(inside)
+            return Negation(whole) if signs % 2 else whole
         case Quotient(above, below):
-            return Quotient(with_hyperbolic(above), below)
+            top = with_hyperbolic(above)
+            if isinstance(top, Negation):
+                return Negation(Quotient(top.operand, below))
+            return Quotient(top, below)
         case _:
             return formula
 
@@ -322,6 +335,18 @@ def multiplied(front: Expression, formula: Expression) -> Expression:
         apart = opened(sum_of([multiplied(front, term) for term in formula.terms]))
         return min((inside, apart), key=operations)
     return _multiplied(front, formula)
+
+
+def _in_powers(factors: Sequence[Expression]) -> list[Expression]:
+    """The factors, names that come more than once as powers."""
+    counts: dict[Expression, int] = {}
+    for factor in factors:
+        base, exponent = factor, 1
+        match factor:
+            case Power(Name() as name, Number(value)) if value.denominator == 1:
+                base, exponent = name, int(value)
+        counts[base] = counts.get(base, 0) + exponent
+    return [power_of(base, exponent) for base, exponent in counts.items()]
 
 
 def _multiplied(front: Expression, formula: Expression) -> Expression:
@@ -350,7 +375,7 @@ def _multiplied(front: Expression, formula: Expression) -> Expression:
         if factor in below:
             above.remove(factor)
             below.remove(factor)
-    top = product((number(amount.numerator), *above))
-    bottom = product((number(amount.denominator), *below))
+    top = product((number(amount.numerator), *_in_powers(above)))
+    bottom = product((number(amount.denominator), *_in_powers(below)))
     whole = top if bottom == ONE else Quotient(top, bottom)
     return negated(whole) if sign < 0 else whole

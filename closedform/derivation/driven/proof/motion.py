@@ -112,6 +112,8 @@ def jump(spot: Spot, said: Said) -> Iterator[Finding]:
     at = spot.instants[place]
     state = spot.motion[place] - _sustained(spot, said, place, at)
     before = acb_mat(spot.a.nrows(), 1)
+    if not place and spot.model.initial is None:  # the rest is in the free motion
+        before = spot.initial - _sustained(spot, said, place, at)
     if place:
         carried = spot.state_at(place - 1, at) - _sustained(spot, said, place - 1, at)
         before = before + carried
@@ -155,6 +157,8 @@ def shape(spot: Spot, said: Said) -> Iterator[Finding]:
         for part in parts:
             if part == writing.response("p"):
                 total = total + _sustained(spot, said, place, t)
+            elif part == writing.response("h"):
+                total = total + spot.free_at(t)
             elif isinstance(part, tuple):
                 total = total + _summand(spot, part, jumps, now)
             elif part != Symbol("zero"):

@@ -15,6 +15,9 @@ from flint import acb, acb_mat, acb_series, arb
 
 from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.algebra.waves import Wave
+from closedform.derivation.driven.boundary_steps import constant_names
+from closedform.derivation.driven.writing import Writing
+from closedform.derivation.proof.evaluation import ball_at
 from closedform.model.driven.model import DrivenModel
 from closedform.model.driven.signal import Repeat
 from closedform.response.driven.periodic import one_period, repeating, without_repeats
@@ -38,6 +41,18 @@ class Spot:
     names: Mapping[str, Any]
     element: Callable[[Scalar], acb]
     period: DrivenModel | None = None
+
+    def __post_init__(self) -> None:
+        """Add the constants that conditions at points determine to the names, by their formulas."""
+        points = self.solution.points
+        if points is None or self.period is not None:
+            return
+        names = constant_names(Writing(self.model), points)
+        own = {
+            name.text: ball_at(points.formula(value), self.names)
+            for name, value in zip(names, points.found.values, strict=True)
+        }
+        object.__setattr__(self, "names", {**self.names, **own})
 
     @property
     def model(self) -> DrivenModel:
@@ -176,7 +191,62 @@ class Spot:
     @cached_property
     def initial(self) -> acb_mat:
         """The given state at the start."""
-        return acb_mat([[self.element(value)] for value in self.driving.initial or ()])
+        if self.driving.initial is not None:
+            return acb_mat([[self.element(value)] for value in self.driving.initial])
+        rows, right = [], []
+        for k, condition in enumerate(self.driving.conditions):
+            since = self.element(condition.at) - self.instants[0]
+            weights = acb_mat([[self.element(w) for w in condition.of_states]])
+            rows.append((weights * (self.a * since).exp()).entries())
+            rest = weights * self._condition_state(k, acb_mat(self.a.nrows(), 1))
+            right.append([self.element(condition.value) - rest[0, 0]])
+        return acb_mat(rows).solve(acb_mat(right))
+
+    def state_of_condition(self, k: int) -> acb_mat:
+        """Return the true state at the instant of a condition, before an impulse there."""
+        return self._condition_state(k, self.initial)
+
+    def _condition_state(self, k: int, initial: acb_mat) -> acb_mat:
+        t = self.element(self.driving.conditions[k].at)
+        before = [j for j, at in enumerate(self.instants) if bool((t - at).real > 0)]
+        if not before:
+            return initial
+        return self.carried(self.motion_from(initial)[before[-1]], before[-1], t)
+
+    def basis_at(self, k: int, t: acb) -> acb_mat:
+        """Return the free motion that belongs to a constant of conditions at points."""
+        if self.solution.points is None:
+            raise ValueError("without conditions at points there are no constants")
+        origin, column = self.solution.points.found.basis[k]
+        return (self.a * (t - self.element(origin))).exp() * self.matrix(column)
+
+    def free_at(self, t: acb) -> acb_mat:
+        """Return the free motion that is left once the first sustained part is off."""
+        start = self.instants[0]
+        held = self.solution.functions.sustained[0]
+        names = {**self.names, self.model.time: start}
+        formulas = self.solution.in_interval(held)[: self.a.nrows()]
+        rest = self.initial - acb_mat([[ball_at(f, names)] for f in formulas])
+        return (self.a * (t - start)).exp() * rest
+
+    @cached_property
+    def point_equations(self) -> tuple[acb_mat, acb_mat]:
+        """The equations for the constants: what each motion has in each condition."""
+        n = self.a.nrows()
+        rows, right = [], []
+        for k, condition in enumerate(self.model.conditions):
+            t = self.element(condition.at)
+            weights = acb_mat([[self.element(w) for w in condition.of_states]])
+            rows.append([(weights * self.basis_at(j, t))[0, 0] for j in range(n)])
+            rest = weights * (self.state_of_condition(k) - self.free_at(t))
+            right.append([self.element(condition.value) - rest[0, 0]])
+        return acb_mat(rows), acb_mat(right)
+
+    @cached_property
+    def point_constants(self) -> acb_mat:
+        """The constants, from the equations."""
+        matrix, right = self.point_equations
+        return matrix.solve(right)
 
     @cached_property
     def motion(self) -> tuple[acb_mat, ...]:

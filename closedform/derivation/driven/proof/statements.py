@@ -15,7 +15,15 @@ from typing import Any
 
 from flint import ctx
 
-from closedform.derivation.driven.proof import closing, generated, motion, periods, stated, tables
+from closedform.derivation.driven.proof import (
+    boundary,
+    closing,
+    generated,
+    motion,
+    periods,
+    stated,
+    tables,
+)
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import Said, said_in
@@ -54,6 +62,12 @@ PROVERS: dict[str, Prover] = {
     "coordinates": stated.state_vector,
     "initial value": stated.initial_value,
     "initial state": stated.initial_state,
+    "point condition": boundary.point_condition,
+    "free motion": boundary.free_motion,
+    "condition equation": boundary.equation,
+    "point determinant": boundary.point_determinant,
+    "point divisor": boundary.divisor,
+    "constant": boundary.constant,
     "input": generated.input_statement,
     "driven output": stated.output_definition,
     "named": stated.named_velocity,
@@ -133,12 +147,12 @@ def prove_driven_statements(
     model: DrivenModel,
     steps: Sequence[Step],
     spots: Sequence[tuple[int, Made]],
-    sets: Sequence[tuple[Mapping[str, Any], Made]] = (),
+    sets: Sequence[Made] = (),
 ) -> Check:
     """Return the check that every statement of the driven steps holds as printed.
 
-    `spots` are the cases by number, each with what makes its points; `sets` are the sets of
-    values that are put in, each with what makes the point that it is.
+    `spots` are the cases by number, each with what makes its points; `sets` make the point of
+    each set of values that is put in.
 
     Raises:  StatementRefutedError for the first that does not hold, or that uses a name that
              is not defined; UnprovedError if there is none, but some are left open;
@@ -156,7 +170,8 @@ def prove_driven_statements(
         here = [s for s in steps if s.kind in TABLES and number in _cases(s, count)]
         _settle(model, make, partial(_findings, model, mine, here))
     for step in steps:
-        for held, make in sets if step.kind == "driven_numbers" else ():
+        rows: Any = step.facts["sets"] if step.kind == "driven_numbers" else ()
+        for held, make in zip(rows, sets if rows else (), strict=True):
             _settle(model, make, partial(_of_a_set, step, held))
     return Check(
         "statements of the derivation",
