@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import replace
+from fractions import Fraction
 
 from closedform.algebra.field import BaseField, Scalar
 from closedform.algebra.parameter_field import ParameterField
@@ -21,6 +22,7 @@ from closedform.notation.expression import (
     Quotient,
     Sum,
     factors_of,
+    number,
     operations,
     product,
 )
@@ -169,8 +171,44 @@ def summed(
         constant = constant_formula(field, summand.constant)
         terms.append(moved if constant is None else scaled(constant, moved))
     if any(summand.constant.named for summand in summands):
-        terms = _over_one(terms)
+        terms = _over_one([_tidied(term) for term in terms])
     return opened(sum_of(terms)) if terms else ZERO
+
+
+def _tidied(formula: Expression) -> Expression:
+    """The formula with numbers in sums added up, and opposite terms left out."""
+    match formula:
+        case Negation(operand):
+            return negated(_tidied(operand))
+        case Sum(terms):
+            return _added([_tidied(term) for term in terms])
+        case Product(factors):
+            return product(map(_tidied, factors))
+        case Quotient(above, below):
+            return Quotient(_tidied(above), _tidied(below))
+        case Power(base, exponent):
+            return Power(_tidied(base), exponent)
+        case Call(function, argument):
+            return Call(function, _tidied(argument))
+        case Name() | Number():
+            return formula
+
+
+def _added(terms: Sequence[Expression]) -> Expression:
+    total, kept = Fraction(0), list[Expression]()
+    for term in terms:
+        match term:
+            case Number(value):
+                total += value
+            case Negation(Number(value)):
+                total -= value
+            case _ if negated(term) in kept:
+                kept.remove(negated(term))
+            case _:
+                kept.append(term)
+    if total or not kept:
+        kept.insert(0 if total > 0 else len(kept), number(total))
+    return opened(sum_of(kept))
 
 
 def _over_one(terms: Sequence[Expression]) -> list[Expression]:

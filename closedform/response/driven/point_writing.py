@@ -160,7 +160,7 @@ class PointWriter:
             if left:
                 exponents.append(self._multiple(left, n.amount))
         if exponents:
-            formula = scaled(Call("exp", opened(sum_of(exponents))), formula)
+            formula = multiplied(Call("exp", opened(sum_of(exponents))), formula)
         return formula
 
     def _hyperbolic(self, element: Scalar, turned: Sequence[AdjoinedNumber]) -> ParameterField:
@@ -312,12 +312,12 @@ def with_hyperbolic(formula: Expression) -> Expression:
         case Sum(terms):
             return sum_of([with_hyperbolic(term) for term in terms])
         case Product(factors):
-            signs, inside = 0, []
+            signs, parts = 0, list[Expression]()
             for factor in map(with_hyperbolic, factors):
                 minus = isinstance(factor, Negation)
                 signs += minus
-                inside.append(factor.operand if isinstance(factor, Negation) else factor)
-            whole = product(inside)
+                parts.append(factor.operand if isinstance(factor, Negation) else factor)
+            whole = product(parts)
             return Negation(whole) if signs % 2 else whole
         case Quotient(above, below):
             top = with_hyperbolic(above)
