@@ -37,6 +37,8 @@ def stated_lines(model: DrivenModel) -> list[tuple[str, list[str]]]:
         found.append(("eliminated", [listed(model.reduction.eliminated)]))
     if model.inputs:
         found.append(("inputs", [listed([plain(given.formula) for given in model.inputs])]))
+    if model.conditions:
+        found.append(("conditions", [", ".join(own.text for own in model.conditions)]))
     instants = [plain(element_formula(model.field, at)) for at in (model.start, *model.timeline)]
     several = f"{len(instants)}: from {', '.join(instants)}"
     found.append(("intervals", [several if model.timeline else f"1, from {instants[0]} on"]))

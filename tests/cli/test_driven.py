@@ -14,6 +14,7 @@ from closedform.cli.commands import app
 from closedform.cli.driven import listed
 from closedform.cli.summary import summary
 from closedform.document.writeup import WriteUp
+from closedform.model.building import model_from
 from closedform.model.driven.model import DrivenModel
 from closedform.response.driven.response import DrivenResponse, respond_driven
 from closedform.verification.driven.verify import verify_driven
@@ -237,6 +238,17 @@ def test_inputs_that_repeat_are_told_and_what_they_lead_to() -> None:
     lines = told(respond_driven(repeated(4)))
     assert "  repeats        u1 every 3, 4 times" in lines
     assert not any(line.startswith("  steady state") for line in lines)
+
+
+def test_conditions_at_points_are_told() -> None:
+    model = model_from(
+        {"title": "Rod", "equations": ["T'' = T"], "at_points": ["T(0) = 1", "T(2) = 0"]},
+        name="rod",
+    )
+    assert isinstance(model, DrivenModel)
+    lines = told(respond_driven(model))
+    assert "  conditions     T(0) = 1, T(2) = 0" in lines
+    assert "  resonance      none" not in lines
 
 
 def test_long_lists_are_cut() -> None:
