@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
+from functools import lru_cache
 from itertools import zip_longest
 
 from closedform.algebra.field import BaseField, Scalar
@@ -170,19 +171,19 @@ class _OfParameters:
         return self.writing, amount
 
     def element(self, wide: ParameterField, element: Scalar) -> Scalar:
-        return self.field.into(wide, element)
+        return _into(self.field, wide, element)
 
     def term(
         self, coefficient: Coefficient | None, scale: Scalar, factors: Sequence[Expression]
     ) -> Expression:
-        value = self.field.into(self.writing, scale)
+        value = _into(self.field, self.writing, scale)
         if coefficient is not None:
             value = value * coefficient
         if not value:
             return ZERO
         if list(factors) == [Name(self.number)]:  # it goes before the parameters: n*k*T
             wide = ParameterField(parameters=(self.number, *self.writing.parameters))
-            value = self.writing.into(wide, value) * wide.symbol(self.number)
+            value = _into(self.writing, wide, value) * wide.symbol(self.number)
             return weighted_rational(wide, value, (), ())
         return weighted_rational(self.writing, value, factors, ())
 
@@ -194,7 +195,7 @@ class _OfParameters:
             wide,
             [
                 Term(
-                    self.writing.into(wide, w.amount),
+                    _into(self.writing, wide, w.amount),
                     0,
                     zero if w.front is None else wide.symbol(w.front),
                     None if w.kernel is None else "cos",
@@ -204,6 +205,11 @@ class _OfParameters:
             ],
             TIME,
         )
+
+
+@lru_cache(maxsize=4096)
+def _into(field: ParameterField, wide: ParameterField, element: Scalar) -> Scalar:
+    return field.into(wide, element)
 
 
 def _sum(one: Amount, other: Amount) -> Amount | None:

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from math import isqrt
 
-from flint import acb, acb_poly, arb
+from flint import acb, acb_poly, arb, ctx
 
 from closedform.algebra.field import Polynomial
 from closedform.algebra.hurwitz import hurwitz_test, sign_oracle
@@ -17,7 +17,7 @@ from closedform.notation import plain, read_signal_formula
 from closedform.notation.errors import FormulaError, UndeclaredNameError
 from closedform.notation.expression import Expression
 from closedform.response.driven.period_formulas import PeriodicSolution, PeriodStretch
-from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared
+from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared, is_narrow
 from closedform.verification.driven.grounds import Ground
 from closedform.verification.driven.periods import Periods
 from closedform.verification.driven.setting import Setting
@@ -28,6 +28,7 @@ __all__ = ["periodic_checks"]
 
 _ENDS = "states at the ends of periods"
 _DIVISORS = "divisors of sums over periods"
+_BITS = 256
 
 
 def periodic_checks(setting: Setting, written: PeriodicSolution) -> tuple[Check, ...]:
@@ -227,17 +228,39 @@ def _said(setting: Setting, p: Polynomial, told: Sequence[Expression]) -> Check:
     if p.degree() == 2 and not undamped:
         return Check(_DIVISORS, "enclosed", "")
     for ground in setting.grounds:
-        enclose, balls = ground.enclose(), ground.balls()
-        period = enclose(setting.instants[-1]) - enclose(setting.instants[0])
-        values = [enclose_formula(formula, balls) for formula in told]
-        squares = [*values, *(4 * v * v for v in values)]
-        coefficients = [acb(enclose(c)) for c in reversed(p.to_list())]
-        for root in acb_poly(coefficients).roots():
-            damped = root.real > 0 or root.real < 0
-            if not root.imag > 0 or (damped and not undamped):
-                continue
-            gap = acb(1) - (root * period).exp()
-            size = gap.real**2 + gap.imag**2
-            if not any(size.overlaps(square) for square in squares):
+        with ctx.workprec(_BITS):
+            gaps = _gaps(setting, p, ground, damped_too=undamped)
+            if gaps is None:
+                how = f"the roots of a factor are not told apart{ground.told}"
+                return Check(_DIVISORS, "not attempted", how)
+            balls = ground.balls()
+            values = [enclose_formula(formula, balls) for formula in told]
+            squares = [*values, *(4 * v * v for v in values)]
+            if not all(map(is_narrow, (*gaps, *values))):
+                return Check(_DIVISORS, "not attempted", f"a divisor is not settled{ground.told}")
+            if not all(any(gap.overlaps(square) for square in squares) for gap in gaps):
                 return Check(_DIVISORS, "refuted", f"a divisor is not named{ground.told}")
     return Check(_DIVISORS, "enclosed", "")
+
+
+def _gaps(setting: Setting, p: Polynomial, ground: Ground, *, damped_too: bool) -> list[arb] | None:
+    """|1 - e^(lambda T)|^2 for the roots above the real axis; None where these are not found."""
+    enclose = ground.enclose()
+    period = enclose(setting.instants[-1]) - enclose(setting.instants[0])
+    coefficients = [acb(enclose(c)) for c in reversed(p.to_list())]
+    if p.degree() == 2:
+        c, b, _ = coefficients
+        half = (b * b / 4 - c).sqrt()
+        roots = [-b / 2 + half, -b / 2 - half]
+    else:
+        try:
+            roots = acb_poly(coefficients).roots()
+        except ValueError:  # they do not converge where two of them meet
+            return None
+    found = []
+    for root in roots:
+        damped = root.real > 0 or root.real < 0
+        if root.imag > 0 and (damped_too or not damped):
+            gap = acb(1) - (root * period).exp()
+            found.append(gap.real**2 + gap.imag**2)
+    return found
