@@ -32,7 +32,7 @@ from closedform.algebra.field import BaseField, Scalar, rational
 from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.algebra.surds import SurdSum, drawn_out
 
-__all__ = ["Adjoined", "AdjoinedNumber", "Recorder", "adjoined"]
+__all__ = ["Adjoined", "AdjoinedNumber", "Recorder", "adjoined", "taken_over"]
 
 Pair = tuple[Scalar, Scalar]
 """cosh(sqrt(D) d) and sinh(sqrt(D) d)/sqrt(D)."""
@@ -347,6 +347,52 @@ def adjoined(
     before = field.parameters if isinstance(field, ParameterField) else ()
     wider = ParameterField((), (*before, *(n.name for n in numbers)))
     return Adjoined(field, wider, tuple(numbers), of_exponents, exponent_names, tuple(held), cosine)
+
+
+def taken_over(old: Adjoined, element: Scalar, numbers: Adjoined | Recorder) -> Scalar:
+    """Return an element with the numbers of one field, each by what it means, in another's."""
+    means = {n.name: _meaning(old, n, numbers) for n in old.numbers}
+    base = old.base
+    if isinstance(base, ParameterField):
+        means |= {name: numbers.lift(base.symbol(name)) for name in base.parameters}
+    if isinstance(numbers, Recorder):
+        return numbers.lift(base.domain.one)
+
+    def put(polynomial: Any) -> Scalar:
+        total = numbers.field.domain.zero
+        for monomial, coefficient in polynomial.iterterms():
+            term = numbers.field.scalar(rational(coefficient))
+            for name, exponent in zip(old.field.parameters, monomial, strict=True):
+                if exponent:
+                    term = term * means[name] ** exponent
+            total = total + term
+        return total
+
+    return put(element.numer) / put(element.denom)
+
+
+def _meaning(old: Adjoined, n: AdjoinedNumber, numbers: Adjoined | Recorder) -> Scalar:
+    field = old.base
+    match n.kind:
+        case "exp":
+            return numbers.power(n.amount)
+        case "even":
+            return numbers.turn(n.core, n.amount)[0]
+        case "odd":
+            return numbers.turn(n.core, n.amount)[1]
+        case "root" if not isinstance(field, ParameterField):
+            return numbers.lift(field.scalar(SurdSum.of({n.number: Fraction(1)})))
+        case "root":  # sqrt(2) = 2 cos(pi/4), sqrt(3) = 2 cos(pi/6)
+            return _cosine_of_pi(field, {2: 4, 3: 6}[n.number], numbers) * 2
+        case "cosine":
+            return _cosine_of_pi(field, n.number, numbers)
+
+
+def _cosine_of_pi(field: BaseField, n: int, numbers: Adjoined | Recorder) -> Scalar:
+    """cos(pi/n)."""
+    if not isinstance(field, ParameterField):
+        raise TypeError("only a field with pi has angles in turns")
+    return numbers.turn(-field.domain.one, field.symbol(PI) / field.scalar(n))[0]
 
 
 # Bases of modules over the integers

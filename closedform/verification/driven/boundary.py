@@ -8,14 +8,11 @@ obey known relations alone; a condition is met where nothing is left modulo thes
 from __future__ import annotations
 
 from collections.abc import Sequence
-from fractions import Fraction
 from math import factorial
 
-from closedform.algebra.adjoined import Adjoined, AdjoinedNumber, Recorder, adjoined
-from closedform.algebra.field import BaseField, FieldMatrix, Scalar, rational
-from closedform.algebra.parameter_field import PI, ParameterField, ParameterPolynomial
+from closedform.algebra.adjoined import Adjoined, Recorder, adjoined, taken_over
+from closedform.algebra.field import BaseField, FieldMatrix, Scalar
 from closedform.algebra.root_matrix import RootMatrix
-from closedform.algebra.surds import SurdSum
 from closedform.algebra.waves import Constant
 from closedform.response.driven.determined import PointConstants
 from closedform.verification.driven.setting import Setting
@@ -71,9 +68,7 @@ def _residuals(
     setting: Setting, numbers: Adjoined | Recorder, points: PointConstants
 ) -> list[Scalar | None]:
     """For each condition what it has on the left, less what it has on the right."""
-    known = {
-        c.name: _taken_over(points.found.numbers, c.element, numbers) for c in points.constants
-    }
+    known = {c.name: taken_over(points.found.numbers, c.element, numbers) for c in points.constants}
     found: list[Scalar | None] = []
     for condition in setting.model.conditions:
         at = setting.put(condition.at)
@@ -159,49 +154,3 @@ def _power(field: BaseField, numbers: Adjoined | Recorder, exponent: Scalar) -> 
 
 def _single(matrix: FieldMatrix) -> Scalar:
     return matrix.to_list()[0][0]
-
-
-def _taken_over(old: Adjoined, element: Scalar, numbers: Adjoined | Recorder) -> Scalar:
-    """An element with the numbers of one field, each by what it means, in those of another."""
-    means = {n.name: _meaning(old, n, numbers) for n in old.numbers}
-    base = old.base
-    if isinstance(base, ParameterField):
-        means |= {name: numbers.lift(base.symbol(name)) for name in base.parameters}
-    if isinstance(numbers, Recorder):
-        return numbers.lift(base.domain.one)
-
-    def put(polynomial: ParameterPolynomial) -> Scalar:
-        total = numbers.field.domain.zero
-        for monomial, coefficient in polynomial.iterterms():
-            term = numbers.field.scalar(rational(coefficient))
-            for name, exponent in zip(old.field.parameters, monomial, strict=True):
-                if exponent:
-                    term = term * means[name] ** exponent
-            total = total + term
-        return total
-
-    return put(element.numer) / put(element.denom)
-
-
-def _meaning(old: Adjoined, n: AdjoinedNumber, numbers: Adjoined | Recorder) -> Scalar:
-    field = old.base
-    match n.kind:
-        case "exp":
-            return numbers.power(n.amount)
-        case "even":
-            return numbers.turn(n.core, n.amount)[0]
-        case "odd":
-            return numbers.turn(n.core, n.amount)[1]
-        case "root" if not isinstance(field, ParameterField):
-            return numbers.lift(field.scalar(SurdSum.of({n.number: Fraction(1)})))
-        case "root":  # sqrt(2) = 2 cos(pi/4), sqrt(3) = 2 cos(pi/6)
-            return _cosine_of_pi(field, {2: 4, 3: 6}[n.number], numbers) * 2
-        case "cosine":
-            return _cosine_of_pi(field, n.number, numbers)
-
-
-def _cosine_of_pi(field: BaseField, n: int, numbers: Adjoined | Recorder) -> Scalar:
-    """cos(pi/n)."""
-    if not isinstance(field, ParameterField):
-        raise TypeError("only a field with pi has angles in turns")
-    return numbers.turn(-field.domain.one, field.symbol(PI) / field.scalar(n))[0]
