@@ -11,6 +11,7 @@ from closedform.algebra.enclosure import ball_of, certified_decimals, enclosed_t
 from closedform.algebra.field import BaseField, Scalar
 from closedform.algebra.surds import SurdSum
 from closedform.algebra.waves import Constant
+from closedform.response.driven.exact_between import exact_between
 from closedform.response.driven.exact_sum import exact_value
 from closedform.response.driven.functions import DrivenFunctions
 from closedform.response.driven.in_field import InField, Spot
@@ -111,6 +112,11 @@ def _row(solution: DrivenSolution, exact: InField, t: SurdSum, digits: int) -> l
     spots = exact.spots_at(t)
     rows = range(len(solution.model.rows))
     found = [exact_value(exact, row, spots, t) for row in rows]
+    if solution.points is not None:
+        found = [
+            exact_between(solution, row, spots[0], t) if value is None else value
+            for row, value in enumerate(found)
+        ]
 
     def balls() -> list[arb]:
         held = spot_balls(solution, spots, t)

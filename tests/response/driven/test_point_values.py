@@ -40,6 +40,17 @@ def test_what_a_condition_states_is_told_exactly(rod: DrivenResponse) -> None:
     assert abs(expected - arb(middle[0])) < arb("1e-7")
 
 
+def test_what_symmetry_makes_zero_is_zero_exactly() -> None:
+    """T'' = T with equal ends: T'(1) = 0, though the constants are transcendental."""
+    even = stated(equations=["T'' = T"], at_points=["T(0) = 1", "T(2) = 1"])
+    ((value, slope),) = sampled_rows(even.solutions[0], [SurdSum.rational(1)], 8)
+    assert abs(1 / arb(1).cosh() - arb(value)) < arb("1e-8")
+    assert slope == "0"
+    turning = stated(equations=["x'' = -x"], at_points=["x(0) = 1", "x(1) = 1"])
+    rows = sampled_rows(turning.solutions[0], [SurdSum.rational(Fraction(1, 2))], 8)
+    assert rows[0][1] == "0"
+
+
 def test_balls_hold_the_conditions(rod: DrivenResponse) -> None:
     for t, value in ((0, 1), (2, 0)):
         ball = enclosed_at(rod.solutions[0], Fraction(t), 30)[0]
