@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 from closedform.algebra.field import Scalar
@@ -41,6 +41,9 @@ class Sinusoid:
 
     Every Scalar is an element of the model's field.  `amplitude_square` is
     cosine^2 + sine^2, `amplitude` the formula of its root.
+
+    `sine_phase` is the phase with respect to the sine, amplitude · sin(w s - sine_phase), where
+    the inputs of this frequency are all sines: a cosine would turn every angle by pi/2.
     """
 
     frequency: Scalar
@@ -51,6 +54,7 @@ class Sinusoid:
     amplitude: Expression
     phase: Angle
     lag: Lag | None
+    sine_phase: Angle | None = None
 
 
 @dataclass(frozen=True)
@@ -58,7 +62,8 @@ class Phasor:
     """The steady state of one row as mean value + sinusoids.
 
     `row` is the place in the model's rows.  Sinusoids of one frequency that count from
-    different origins stay apart.  The reference of each phase is cos(w (t - origin)).
+    different origins stay apart.  The reference of each phase is cos(w (t - origin)), that of
+    each `sine_phase` sin(w (t - origin)).
     """
 
     row: int
@@ -93,7 +98,8 @@ def phasors_of(
             if not cosine and not sine:
                 continue
             point = polar(model.field, sign_of, sine, cosine)
-            given = _only_input(model, put, frequency, origin)
+            held = _inputs_of(model, put, frequency)
+            given = _only_input(held, origin)
             sinusoids.append(
                 Sinusoid(
                     frequency,
@@ -104,6 +110,9 @@ def phasors_of(
                     point.modulus,
                     point.angle,
                     None if given is None else _lag(model, sign_of, given, (cosine, sine)),
+                    polar(model.field, sign_of, -cosine, sine).angle
+                    if all(not one.cosine for one in held)
+                    else None,
                 )
             )
         formula = element_formula(model.field, mean)
@@ -113,30 +122,37 @@ def phasors_of(
 
 @dataclass(frozen=True)
 class _Given:
-    """An input cosine · cos(w s) + sine · sin(w s)."""
+    """An input of t^power times cosine · cos(w s) + sine · sin(w s), s = t - origin."""
 
     place: int
+    origin: Scalar
+    power: int
     cosine: Scalar
     sine: Scalar
 
 
-def _only_input(model: DrivenModel, put: Put, frequency: Scalar, origin: Scalar) -> _Given | None:
-    """The input that alone holds a sinusoid of this frequency, and holds it from this origin."""
-    found: dict[int, list[Scalar]] = {}
+def _inputs_of(model: DrivenModel, put: Put, frequency: Scalar) -> list[_Given]:
+    """What the inputs hold of a frequency for ever, apart where origins or powers are."""
+    found: dict[tuple[int, Scalar, int], list[Scalar]] = {}
     zero = model.field.domain.zero
     for place, wave in waves_for_ever(model):
         own = put(wave.frequency)
         if put(wave.rate) or wave.kernel == "one" or own not in (frequency, -frequency):
             continue
-        part = found.setdefault(place, [zero, zero])
-        if wave.power or put(wave.origin) != origin:
-            return None
+        part = found.setdefault((place, put(wave.origin), wave.power), [zero, zero])
         turned = wave.kernel == "sin" and own != frequency
         part[wave.kernel == "sin"] += put(-wave.amount if turned else wave.amount)
-    if len(found) != 1:
+    return [_Given(*key, *part) for key, part in found.items()]
+
+
+def _only_input(held: Sequence[_Given], origin: Scalar) -> _Given | None:
+    """The input that alone holds a sinusoid of a frequency, and holds it from this origin."""
+    if len({one.place for one in held}) != 1:
         return None
-    ((place, (cosine, sine)),) = found.items()
-    return _Given(place, cosine, sine) if cosine or sine else None
+    if any(one.power or one.origin != origin for one in held):
+        return None
+    (given,) = held
+    return given if given.cosine or given.sine else None
 
 
 def _lag(

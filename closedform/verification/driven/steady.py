@@ -226,10 +226,17 @@ def _of_sinusoid(setting: Setting, told: str, s: Sinusoid) -> Iterator[tuple[str
     for way, angle in angles.items():
         yield f"{told}, cosine{way}", partial(_part, amplitude, angle, s.cosine, "cos")
         yield f"{told}, sine{way}", partial(_part, amplitude, angle, s.sine, "sin")
+    if s.sine_phase is not None:
+        for way, angle in _angles(setting, s.sine_phase).items():
+            by = f"{told}, by the sine{way}"
+            yield f"{by}, cosine", partial(_part, amplitude, angle, -s.cosine, "sin")
+            yield f"{by}, sine", partial(_part, amplitude, angle, s.sine, "cos")
     if s.lag is None:
         return
     waves = [
-        w for w in setting.waves_on(s.lag.input, setting.last) if w.kernel != "one" and not w.rate
+        w
+        for w in setting.waves_on(s.lag.input, setting.last)
+        if w.kernel != "one" and not w.rate and _is_of(setting, w, s)
     ]
     zero = setting.field.domain.zero
     cosine = sum((w.amount for w in waves if w.kernel == "cos"), zero)
@@ -242,6 +249,14 @@ def _of_sinusoid(setting: Setting, told: str, s: Sinusoid) -> Iterator[tuple[str
         own = _Lag(gain, angle, cosine, sine)
         yield f"{told}, gain and lag{way}", partial(own.pair, s.cosine, "cos")
         yield f"{told}, lag and gain{way}", partial(own.pair, s.sine, "sin")
+
+
+def _is_of(setting: Setting, wave: Wave, s: Sinusoid) -> bool:
+    """Whether a wave has the frequency of a sinusoid and counts from its origin."""
+    if not setting.vanishes(wave.origin - s.origin):
+        return False
+    own = wave.frequency
+    return setting.vanishes(own - s.frequency) or setting.vanishes(own + s.frequency)
 
 
 def _angles(setting: Setting, angle: Angle) -> dict[str, Callable[[Value], arb]]:

@@ -16,6 +16,7 @@ from closedform.algebra.field import BaseField, Scalar
 from closedform.algebra.hurwitz import sign_oracle
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.surds import SurdSum
+from closedform.model.building import model_from
 from closedform.model.driven.model import DrivenModel
 from closedform.model.driven.signal import Burst, Signal
 from closedform.notation.evaluation import enclose
@@ -189,7 +190,11 @@ def _ball(solution: DrivenSolution, phasor: Phasor, t: arb) -> tuple[arb, arb]:
     total = enclose(phasor.mean_formula, {})
     for s in phasor.sinusoids:
         angle = field.enclose(s.frequency) * (t - field.enclose(s.origin))
-        total += enclose(s.amplitude, {}) * (angle - s.phase.ball(field.enclose)).cos()
+        own = enclose(s.amplitude, {}) * (angle - s.phase.ball(field.enclose)).cos()
+        if s.sine_phase is not None:
+            by_sine = (angle - s.sine_phase.ball(field.enclose)).sin()
+            assert abs(enclose(s.amplitude, {}) * by_sine - own).abs_upper() < FIFTY
+        total += own
     return written, total
 
 
@@ -367,3 +372,25 @@ def test_what_the_squares_of_an_amplitude_share_is_not_written_twice() -> None:
     below = "sqrt(1 + 7*T^2*w^2 + T^4*w^4)"
     assert plain(first.sinusoids[0].amplitude) == f"U*sqrt(1 + T^2*w^2)/{below}"
     assert plain(second.sinusoids[0].amplitude) == f"U/{below}"
+
+
+def test_what_sines_alone_drive_is_told_by_the_sine() -> None:
+    def found(load: str) -> Sinusoid:
+        sought = {
+            "title": "An oscillator",
+            "equations": ["m*x'' + c*x' + k*x = F"],
+            "parameters": dict.fromkeys([*"mckwp"], "positive"),
+            "inputs": {"F": load},
+            "initial": {"x": 0, "x'": 0},
+        }
+        model = model_from(sought, name="oscillator")
+        assert isinstance(model, DrivenModel)
+        phasor = respond_driven(model).solutions[0].phasors[0]
+        assert phasor is not None
+        return phasor.sinusoids[0]
+
+    angle = found("p*sin(w*t)").sine_phase
+    assert angle is not None
+    assert (plain(angle.above), plain(angle.beside)) == ("c*w", "k - m*w^2")
+    assert found("p*cos(w*t)").sine_phase is None
+    assert found("p*cos(w*t) + k*sin(w*t)").sine_phase is None

@@ -68,7 +68,19 @@ def test_another_verdict_on_stability_is_refuted(response: DrivenResponse) -> No
         assert stability_check(setting_to(spoiled)).outcome == "refuted"
 
 
-@pytest.mark.parametrize("part", ["amplitude", "cosine", "phase", "lag", "gain"])
+@pytest.mark.parametrize(
+    "load", ["3*sin(2*t + 1) - cos(t/3)", "sin(2*t) + sin(2*(t - 1)) + cos(t)"]
+)
+def test_sinusoids_of_several_frequencies_or_origins_are_each_proved(load: str) -> None:
+    sought = {
+        "equations": ["x'' + 2*x' + 5*x = F"],
+        "inputs": {"F": load},
+        "initial": {"x": 1, "x'": 0},
+    }
+    assert _outcomes(setting_to(respond_driven(stated(sought)))) == ["proved", "proved", "enclosed"]
+
+
+@pytest.mark.parametrize("part", ["amplitude", "cosine", "phase", "by the sine", "lag", "gain"])
 def test_another_amplitude_or_phase_is_refuted(setting: Setting, part: str) -> None:
     solution = replace(setting.solution)
     phasor, *others = solution.phasors
@@ -82,6 +94,7 @@ def test_another_amplitude_or_phase_is_refuted(setting: Setting, part: str) -> N
         "amplitude": replace(sinusoid, amplitude=Product((TWO, sinusoid.amplitude))),
         "cosine": replace(sinusoid, cosine=sinusoid.cosine + 1),
         "phase": replace(sinusoid, phase=turned),
+        "by the sine": replace(sinusoid, sine_phase=turned),
         "lag": replace(sinusoid, lag=lag),
         "gain": replace(sinusoid, lag=gain),
     }[part]
