@@ -11,7 +11,10 @@ from closedform.notation.terms import negated, sum_of
 from closedform.response.driven.period_formulas import PeriodicSolution, PeriodStretch
 from closedform.response.driven.solution import DrivenSolution
 
-__all__ = ["periodic_steps"]
+__all__ = ["periodic_steps", "recursion"]
+
+STEADY = "s"
+"""The index of what a steady period begins with."""
 
 
 def periodic_steps(
@@ -28,6 +31,8 @@ def periodic_steps(
             "local": _local(writing, own),
             "number": Name(own.number),
             "left": _states(writing, own, own.left, "one period"),
+            "recursion": recursion(writing, own.period, own.number),
+            "unmoved": None if own.begins is None else recursion(writing, own.period, None),
             "carried": _states(writing, own, own.carried, "carried"),
             "begins": None
             if own.begins is None
@@ -67,9 +72,25 @@ def _states(
     writing: Writing, own: PeriodicSolution, formulas: tuple[Expression, ...], says: str
 ) -> Statement:
     """The states at the end of one period, of the n-th, and of the steady one."""
-    index = {"one period": "1", "carried": own.number, "steady start": "s"}[says]
-    left = Symbol("scalar" if writing.is_scalar else "vector", (index,), None, "g")
-    return Statement(says, (left, writing.column(formulas)))
+    index = {"one period": "1", "carried": own.number, "steady start": STEADY}[says]
+    return Statement(says, (_end(writing, index), writing.column(formulas)))
+
+
+def recursion(writing: Writing, period: Expression, number: str | None) -> Statement:
+    """State how the ends of periods follow from one another; without a number, of the steady one.
+
+    g_n = e^(AT) g_(n-1) + g_1, and g_s = e^(AT) g_s + g_1.
+    """
+    before = STEADY if number is None else f"{number}-1"
+    carried = (writing.exponential(period), _end(writing, before))
+    whole = Symbol("sum", parts=(carried, _end(writing, "1")))
+    says = "steady equation" if number is None else "period recursion"
+    return Statement(says, (_end(writing, number or STEADY), whole))
+
+
+def _end(writing: Writing, index: str) -> Symbol:
+    """The states at the end of a period."""
+    return Symbol("scalar" if writing.is_scalar else "vector", (index,), None, "g")
 
 
 def _stretch(

@@ -7,15 +7,17 @@ from typing import Any
 
 from flint import acb, acb_mat
 
+from closedform.derivation.driven.periodic_steps import recursion
 from closedform.derivation.driven.proof.motion import row_of
 from closedform.derivation.driven.proof.spot import PeriodSpot, Spot
 from closedform.derivation.driven.proof.values import column_at, equal
+from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import Said
 from closedform.derivation.parametric.proof.model import formula_of
 from closedform.derivation.proof.evaluation import ball_at
 from closedform.derivation.proof.finding import Comparison, Fault, Finding, whether
 from closedform.derivation.step import Symbol
-from closedform.notation.expression import Name
+from closedform.notation.expression import Expression, Name
 
 __all__ = [
     "after",
@@ -25,6 +27,8 @@ __all__ = [
     "local_time",
     "one_period",
     "period",
+    "period_recursion",
+    "steady_equation",
     "steady_period",
     "steady_start",
 ]
@@ -82,6 +86,33 @@ def carried(spot: Spot, said: Said) -> Iterator[Finding]:
     own = _own(spot, said)
     for n in _periods(own):
         yield from _states(spot, said, own.left(n), {_letter(said): acb(n)})
+
+
+def period_recursion(spot: Spot, said: Said) -> Iterator[Finding]:
+    """The states at the end of a period follow from those at the end of the one before."""
+    own = _own(spot, said)
+    expected = recursion(Writing(spot.model), _period_formula(said), _letter(said))
+    yield from whether(said.statement == expected, said.statement.says, "it says something else")
+    carried = (spot.a * own.length).exp()
+    for n in _periods(own)[1:]:
+        follows = carried * own.left(n - 1) + own.left(1)
+        for k, value in enumerate(follows.entries()):
+            yield equal(said.statement.says, value, own.left(n)[k, 0])
+
+
+def steady_equation(spot: Spot, said: Said) -> Iterator[Finding]:
+    """The states that a period finds again."""
+    own = _own(spot, said)
+    expected = recursion(Writing(spot.model), _period_formula(said), None)
+    yield from whether(said.statement == expected, said.statement.says, "it says something else")
+    follows = (spot.a * own.length).exp() * own.begins() + own.left(1)
+    for k, value in enumerate(follows.entries()):
+        yield equal(said.statement.says, value, own.begins()[k, 0])
+
+
+def _period_formula(said: Said) -> Expression:
+    statement: Any = said.step.facts["period"]
+    return formula_of(statement.sides[0])
 
 
 def steady_start(spot: Spot, said: Said) -> Iterator[Finding]:
@@ -156,5 +187,7 @@ def after(spot: Spot, said: Said) -> Iterator[Finding]:
 
 def divisor(spot: Spot, said: Said) -> Iterator[Finding]:
     """A divisor is not zero at the points of the case."""
-    value = acb(ball_at(formula_of(said.statement.sides[0]), spot.names))
-    yield from whether(not value.is_zero(), "divisor", "it is zero")
+    (formula,) = map(formula_of, said.statement.sides)
+    known = any(formula in own.provided for own in spot.solution.periodic)
+    yield from whether(known, "divisor", "nothing is divided by it")
+    yield from whether(not acb(ball_at(formula, spot.names)).is_zero(), "divisor", "it is zero")

@@ -119,6 +119,8 @@ PROVERS: dict[str, Prover] = {
     "period": periods.period,
     "local time": periods.local_time,
     "one period": periods.one_period,
+    "period recursion": periods.period_recursion,
+    "steady equation": periods.steady_equation,
     "carried": periods.carried,
     "steady start": periods.steady_start,
     "in period": periods.in_period,
