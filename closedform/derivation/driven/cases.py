@@ -276,14 +276,14 @@ def _sets(
     stacked: ParametricResponse,
     inner: Sequence[Step],
     step: Step | None,
-) -> list[tuple[Mapping[str, Any], Made]]:
+) -> list[Made]:
     """The sets of values that are put in, each as the point that it is."""
     definitions = tuple(defined_in(inner, len(stacked.cases)))
     rows: Any = [] if step is None else step.facts["sets"]
     found = []
     for row in rows:
         ground = Ground(stacked, stacked.cases[row["case"]], Given(row["values"]), definitions)
-        found.append((row, _maker(response.solutions[row["case"]], [ground])))
+        found.append(_maker(response.solutions[row["case"]], [ground]))
     return found
 
 

@@ -134,8 +134,13 @@ def steady_step(
     if steady is None or not steady.steady:
         return None
     rows: list[dict[str, Any]] = []
+    phases: list[dict[str, Any]] = []
     for place, name in enumerate(writing.model.rows):
         phasor = solution.phasors[place]
+        told = None
+        if phasor is not None:
+            told, own = _phasor(writing, name, phasor, place)
+            phases += own
         rows.append(
             {
                 "row": place,
@@ -147,14 +152,13 @@ def steady_step(
                         steady.steady_formulas[place],
                     ),
                 ),
-                "phasor": None if phasor is None else _phasor(writing, name, phasor, place),
+                "phasor": told,
             }
         )
     several = len(solution.functions.intervals) > 1
     last = len(solution.functions.intervals) - 1
     phasors = [row["phasor"] for row in rows if row["phasor"] is not None]
-    phases = [phase for phasor in phasors for phase in phasor["phases"]]
-    told = {
+    facts = {
         **facts,
         "rows": rows,
         "phases": phases,
@@ -165,7 +169,7 @@ def steady_step(
         "constant": all(row["kind"] in ("constant", "zero") for row in rows),
         "growing": any(row["kind"] == "growing" for row in rows),
     }
-    return Step("steady", (), told, ("stability",), "summary")
+    return Step("steady", (), facts, ("stability",), "summary")
 
 
 _QUADRANTS = {"I": "first", "II": "second", "III": "third", "IV": "fourth"}
@@ -194,10 +198,12 @@ def transient_step(
     return Step("transient", statements, facts, ("steady",), "full")
 
 
-def _phasor(writing: Writing, name: str, phasor: Phasor, row: int) -> dict[str, Any]:
-    """Amplitude · cos(w t - phase) for each sinusoid, and what each phase is."""
+def _phasor(
+    writing: Writing, name: str, phasor: Phasor, row: int
+) -> tuple[dict[str, Any], list[dict[str, Any]]]:
+    """The steady state by amplitude and phase; and what each phase is."""
     parts: list[Side] = [] if phasor.mean_formula == ZERO else [phasor.mean_formula]
-    phases = []
+    phases: list[dict[str, Any]] = []
     for k, sinusoid in enumerate(phasor.sinusoids):
         symbol = _phase_symbol(row, k, len(phasor.sinusoids))
         argument = _argument(writing, sinusoid)
@@ -205,11 +211,8 @@ def _phasor(writing: Writing, name: str, phasor: Phasor, row: int) -> dict[str, 
         phases.append(_phase(sinusoid, symbol))
     side = parts[0] if len(parts) == 1 else Symbol("sum", parts=tuple(parts))
     symbol = Symbol("scalar", ("steady",), writing.t, name)
-    return {
-        "statement": Statement("by amplitude", (symbol, side)),
-        "phases": phases,
-        "gains": list(_gains(writing, name, phasor)),
-    }
+    statement = Statement("by amplitude", (symbol, side))
+    return {"statement": statement, "gains": list(_gains(writing, name, phasor))}, phases
 
 
 def _phase_symbol(row: int, k: int, count: int) -> Symbol:
@@ -224,7 +227,7 @@ def _argument(writing: Writing, sinusoid: Sinusoid) -> Expression:
     return writing.term(sinusoid.frequency, [t])
 
 
-def _phase(sinusoid: Sinusoid, symbol: Symbol) -> dict[str, object]:
+def _phase(sinusoid: Sinusoid, symbol: Symbol) -> dict[str, Any]:
     """The phase by its arc tangent and its quadrant; else by its cosine and sine."""
     angle = sinusoid.phase
     value: Side = Symbol("angle of", parts=(angle.above, angle.beside))

@@ -5,10 +5,12 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from closedform.derivation.driven.writing import Writing
-from closedform.derivation.step import Statement, Step, Symbol
-from closedform.notation.expression import ONE, ZERO, Expression, Name, Sum, product
+from closedform.derivation.step import Side, Statement, Step, Symbol
+from closedform.model.driven.signal import Repeat
+from closedform.notation.expression import ONE, ZERO, Call, Expression, Name, Sum, product
 from closedform.notation.terms import negated, sum_of
 from closedform.response.driven.period_formulas import PeriodicSolution, PeriodStretch
+from closedform.response.driven.periodic import repeating
 from closedform.response.driven.solution import DrivenSolution
 
 __all__ = ["periodic_steps", "recursion"]
@@ -22,6 +24,7 @@ def periodic_steps(
 ) -> Iterator[Step]:
     """State, for inputs that repeat, the response in the n-th period, and what it tends to."""
     base = any(part.summands for part in solution.functions.intervals)
+    repeats = repeating(writing.model)
     for place, own in enumerate(solution.periodic):
         told = {
             **facts,
@@ -31,8 +34,8 @@ def periodic_steps(
             "local": _local(writing, own),
             "number": Name(own.number),
             "left": _states(writing, own, own.left, "one period"),
-            "recursion": recursion(writing, own.period, own.number),
-            "unmoved": None if own.begins is None else recursion(writing, own.period, None),
+            "recursion": recursion(writing, repeats[place], own.number),
+            "unmoved": None if own.begins is None else recursion(writing, repeats[place], None),
             "carried": _states(writing, own, own.carried, "carried"),
             "begins": None
             if own.begins is None
@@ -76,16 +79,24 @@ def _states(
     return Statement(says, (_end(writing, index), writing.column(formulas)))
 
 
-def recursion(writing: Writing, period: Expression, number: str | None) -> Statement:
+def recursion(writing: Writing, repeat: Repeat, number: str | None) -> Statement:
     """State how the ends of periods follow from one another; without a number, of the steady one.
 
     g_n = e^(AT) g_(n-1) + g_1, and g_s = e^(AT) g_s + g_1.
     """
     before = STEADY if number is None else f"{number}-1"
-    carried = (writing.exponential(period), _end(writing, before))
+    carried = (_over_a_period(writing, repeat), _end(writing, before))
     whole = Symbol("sum", parts=(carried, _end(writing, "1")))
     says = "steady equation" if number is None else "period recursion"
     return Statement(says, (_end(writing, number or STEADY), whole))
+
+
+def _over_a_period(writing: Writing, repeat: Repeat) -> Side:
+    """e^(AT); with one state its exponential, the exponent worked out."""
+    if not writing.is_scalar:
+        return Symbol("transition", argument=writing.element(repeat.period), letter="A")
+    rate = writing.model.reduction.matrix.to_list()[0][0]
+    return Call("exp", writing.element(rate * repeat.period)) if rate else ONE
 
 
 def _end(writing: Writing, index: str) -> Symbol:

@@ -113,8 +113,11 @@ def point_determinant(spot: Spot, said: Said) -> Iterator[Finding]:
 
 def divisor(spot: Spot, said: Said) -> Iterator[Finding]:
     """What must not be zero is not, at the points of the case."""
-    value = acb(ball_at(formula_of(said.statement.sides[0]), spot.names))
-    yield from whether(not value.is_zero(), "divisor", "it is zero")
+    (formula,) = map(formula_of, said.statement.sides)
+    points = spot.solution.points
+    known = points is not None and formula in points.provided
+    yield from whether(known, "divisor", "nothing is divided by it")
+    yield from whether(not acb(ball_at(formula, spot.names)).is_zero(), "divisor", "it is zero")
 
 
 def _names(spot: Spot) -> Any:

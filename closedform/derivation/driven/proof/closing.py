@@ -17,6 +17,7 @@ from closedform.derivation.parametric.proof.model import formula_of
 from closedform.derivation.proof.evaluation import ball_at
 from closedform.derivation.proof.finding import Comparison, Fault, Finding, undecided, whether
 from closedform.derivation.step import Side, Step, Symbol
+from closedform.notation.expression import ZERO
 
 __all__ = [
     "balance",
@@ -121,6 +122,7 @@ def polynomial_of_a(spot: Spot, said: Said) -> Iterator[Finding]:
 
 def factor_of_a(spot: Spot, said: Said) -> Iterator[Finding]:
     """A factor of det(lambda I - A)."""
+    yield from whether(said.statement.sides[1] == ZERO, "factor of A", "it is not said to be 0")
     factor = _coefficients(spot, said.statement.sides[0])
     _, rest = divmod(spot.a.charpoly(), factor)
     for k in range(factor.degree()):
@@ -232,7 +234,8 @@ def by_amplitude(spot: Spot, said: Said) -> Iterator[Finding]:
         return
     rows: Any = said.step.facts["rows"]
     formula = formula_of(rows[row]["steady"].sides[1])
-    phases = {p["statement"].sides[0]: p["statement"].sides[1] for p in said.row["phases"]}
+    held: Any = said.step.facts["phases"]
+    phases = {p["statement"].sides[0]: p["statement"].sides[1] for p in held}
     parts = side.parts if isinstance(side, Symbol) and side.kind == "sum" else (side,)
     for t in spot.times(len(spot.instants) - 1):
         names = {**spot.names, spot.model.time: t}
@@ -240,6 +243,9 @@ def by_amplitude(spot: Spot, said: Said) -> Iterator[Finding]:
         for part in parts:
             if isinstance(part, Symbol) and part.kind == "sinusoid":
                 amplitude, argument, name = part.parts
+                if name not in phases:
+                    yield Fault("amplitude and phase", "a phase is not said")
+                    return
                 turn = ball_at(formula_of(argument), names)
                 shift = angle_at(spot, phases[name])
                 total += ball_at(formula_of(amplitude), names) * (turn - shift).cos()

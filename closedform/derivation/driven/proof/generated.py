@@ -221,11 +221,16 @@ def generator_start(spot: Spot, said: Said) -> Iterator[Finding]:
     symbol, column = said.statement.sides
     if not isinstance(symbol, Symbol) or symbol.argument is None:
         raise TypeError(f"{symbol} is no vector at an instant")
+    orders = spot.model.generator.orders if spot.model.generator else ()
+    several = sum(order > 0 for order in orders) > 1
+    index = (str(said.row["input"] + 1),) if several else ()
+    same = symbol == Symbol("vector", index, symbol.argument, "w")
+    yield from whether(same, "start of w", "it is another vector")
     printed = column_at(column, spot.names, spot.names)
     at = ball_at(symbol.argument, spot.names)
     series_names = {**spot.names, spot.model.time: acb_series([at, acb(1)], SERIES)}
     series = ball_at(formula_of(said.row["waves"].sides[1]), series_names)
-    size = spot.model.generator.orders[said.row["input"]] if spot.model.generator else 0
+    size = orders[said.row["input"]]
     yield from whether(len(printed) == size, "start of w", "it has another number of rows")
     for k, value in enumerate(printed):
         yield equal("start of w", value, derivative(series, k))
@@ -272,6 +277,8 @@ def readout(_spot: Spot, said: Said) -> Iterator[Finding]:
 def readout_matrix(spot: Spot, said: Said) -> Iterator[Finding]:
     """R gives u from w."""
     printed = matrix_at(as_matrix(said.statement.sides[-1]), spot.names)
+    letter = said.statement.sides[0] == Symbol("matrix", letter="R")
+    yield from whether(letter, "R", "it is another letter")
     for place in spot.places:
         t = spot.times(place)[0]
         w = acb_mat([[e] for e in spot.generated(place, t)])

@@ -17,7 +17,7 @@ from closedform.derivation.parametric.proof.model import formula_of
 from closedform.derivation.proof.evaluation import ball_at
 from closedform.derivation.proof.finding import Comparison, Fault, Finding, whether
 from closedform.derivation.step import Symbol
-from closedform.notation.expression import Expression, Name
+from closedform.notation.expression import Name
 
 __all__ = [
     "after",
@@ -91,7 +91,7 @@ def carried(spot: Spot, said: Said) -> Iterator[Finding]:
 def period_recursion(spot: Spot, said: Said) -> Iterator[Finding]:
     """The states at the end of a period follow from those at the end of the one before."""
     own = _own(spot, said)
-    expected = recursion(Writing(spot.model), _period_formula(said), _letter(said))
+    expected = recursion(Writing(spot.model), own.repeat, _letter(said))
     yield from whether(said.statement == expected, said.statement.says, "it says something else")
     carried = (spot.a * own.length).exp()
     for n in _periods(own)[1:]:
@@ -103,16 +103,11 @@ def period_recursion(spot: Spot, said: Said) -> Iterator[Finding]:
 def steady_equation(spot: Spot, said: Said) -> Iterator[Finding]:
     """The states that a period finds again."""
     own = _own(spot, said)
-    expected = recursion(Writing(spot.model), _period_formula(said), None)
+    expected = recursion(Writing(spot.model), own.repeat, None)
     yield from whether(said.statement == expected, said.statement.says, "it says something else")
     follows = (spot.a * own.length).exp() * own.begins() + own.left(1)
     for k, value in enumerate(follows.entries()):
         yield equal(said.statement.says, value, own.begins()[k, 0])
-
-
-def _period_formula(said: Said) -> Expression:
-    statement: Any = said.step.facts["period"]
-    return formula_of(statement.sides[0])
 
 
 def steady_start(spot: Spot, said: Said) -> Iterator[Finding]:

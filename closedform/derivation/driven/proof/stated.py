@@ -12,6 +12,7 @@ from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.values import as_matrix, column_at, equal, formula_at
 from closedform.derivation.driven.signals import input_formula
 from closedform.derivation.driven.writing import Writing, bold, unboxed
+from closedform.derivation.parametric.case_steps import case_conditions_of
 from closedform.derivation.parametric.proof.ground import Said
 from closedform.derivation.parametric.proof.model import formula_of
 from closedform.derivation.proof.evaluation import ball_at, matrix_at
@@ -122,6 +123,12 @@ def condition(spot: Spot, said: Said) -> Iterator[Finding]:
     left, right = (acb(ball_at(formula_of(side), spot.names)) for side in said.statement.sides)
     gap = (left - right).real
     relation, place = said.statement.relation, said.statement.says
+    case = spot.solution.case
+    if place == "case condition":
+        own = case is not None and said.statement in case_conditions_of(case)
+        yield from whether(own, place, "it is not one of the case")
+    else:
+        yield Comparison(place, right, acb(0))
     if relation in ("=", "<=", ">=") and gap.contains(0):
         yield equal(place, left, right)
         return
@@ -162,6 +169,8 @@ def second_order_matrix(spot: Spot, said: Said) -> Iterator[Finding]:
     """M, C, K or G: with the others it holds for any state that follows the state form."""
     printed = matrix_at(as_matrix(said.statement.sides[-1]), spot.names)
     place = SECOND_ORDER.index(said.statement.says)
+    letter = said.statement.sides[0] == Symbol("matrix", letter="MCKG"[place])
+    yield from whether(letter, said.statement.says, "it is another letter")
     rows = second_order_matrices(spot.model)[place]
     expected = acb_mat([[spot.element(e) for e in row] for row in rows])
     yield from agreeing(said.statement.says, printed, expected)

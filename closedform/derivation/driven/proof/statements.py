@@ -28,7 +28,13 @@ from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import Said, said_in
 from closedform.derivation.proof.evaluation import expressions_in
-from closedform.derivation.proof.finding import Comparison, Fault, Finding, StatementRefutedError
+from closedform.derivation.proof.finding import (
+    Comparison,
+    Fault,
+    Finding,
+    StatementRefutedError,
+    undecided,
+)
 from closedform.derivation.step import Step
 from closedform.model.driven.model import DrivenModel
 from closedform.notation.expression import Name, names_in
@@ -207,7 +213,7 @@ def _settle(model: DrivenModel, make: Made, find: Callable[[Spot], Iterator[Find
     bits = _FIRST_BITS
     while True:
         with ctx.workprec(bits):
-            wide = [w for spot in make() for w in _wide(model, find(spot))]
+            wide = _at_once(model, make, find)
         if not wide:
             return
         if bits >= _MOST_BITS:
@@ -220,6 +226,16 @@ def _settle(model: DrivenModel, make: Made, find: Callable[[Spot], Iterator[Find
     places = dict.fromkeys(map(str, wide))
     how = f"not settled by {bits} bits"
     raise UnprovedError(model.name, tuple(Check(p, "not attempted", how) for p in places))
+
+
+def _at_once(
+    model: DrivenModel, make: Made, find: Callable[[Spot], Iterator[Finding]]
+) -> list[Comparison]:
+    """Return what FLINT's current precision leaves open, at all points."""
+    try:
+        return [w for spot in make() for w in _wide(model, find(spot))]
+    except ZeroDivisionError:  # a matrix that is regular has no inverse in balls this wide
+        return [undecided("a system of equations")]
 
 
 def _wide(model: DrivenModel, findings: Iterator[Finding]) -> Iterator[Comparison]:
