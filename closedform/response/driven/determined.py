@@ -154,7 +154,10 @@ def _refusal(
             origin, column = singular.motion
             start = tuple(e for (e,) in column.to_list())
             free = motion(_undriven(model, origin, start))
-            shown = tuple((name, plain(formula)) for name, formula in free)[: len(model.unknowns)]
+            rows = [pair for pair in free if pair[0] in model.unknowns]
+            if len(rows) == 1:
+                rows = [(name, _bare(formula)) for name, formula in rows]
+            shown = tuple((name, plain(formula)) for name, formula in rows)
         return ManySolutionsError(model.title, singular.free, shown, branch.case)
     held = [k for k, w in enumerate(singular.weights) if w]
     last = held[-1]
