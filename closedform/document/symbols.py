@@ -58,6 +58,7 @@ from closedform.notation.expression import (
     Negation,
     Number,
     Product,
+    Quotient,
     Sum,
     is_expression,
 )
@@ -176,9 +177,11 @@ def _exponential(letter: str) -> Callable[[Symbol], Box]:
     def setter(symbol: Symbol) -> Box:
         argument = symbol.argument or Name("t")
         raised = formula(argument, Style.SCRIPT)
-        if isinstance(argument, Sum | Negation | Number):
-            raised = bracketed(raised, Style.SCRIPT)
         base = _bold(symbol, letter, Style.SCRIPT)
+        if isinstance(argument, Number) and argument.value.denominator == 1 <= argument.value:
+            base, raised = raised, base  # e^(2A)
+        elif isinstance(argument, Sum | Negation | Number | Quotient):
+            raised = bracketed(raised, Style.SCRIPT)
         return Box(
             rf"\mathrm{{e}}^{{{base.latex}{raised.latex}}}", 0.48 + base.width + raised.width
         )

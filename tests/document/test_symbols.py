@@ -8,6 +8,7 @@ from closedform.notation.expression import Name, Quotient
 from tests.document.making import T, add, matrix, neg, prod, q, root
 
 S = Symbol
+OTHERWISE = S("interval", ("otherwise",))
 RESIDUES = (
     r"\sum_{p(\lambda) = 0} "
     r"\frac{\boldsymbol{N}(\lambda)}{p'(\lambda)}\,\mathrm{e}^{\lambda s}"
@@ -31,6 +32,7 @@ SIDES: list[tuple[Side, str]] = [
     (S("transition", argument=Name("tau")), r"\mathrm{e}^{\boldsymbol{A}\tau}"),
     (S("transition", argument=add("t", neg("s"))), r"\mathrm{e}^{\boldsymbol{A}(t - s)}"),
     (S("transition", argument=q(0)), r"\mathrm{e}^{\boldsymbol{A}(0)}"),
+    (S("transition", argument=q(2)), r"\mathrm{e}^{2\boldsymbol{A}}"),
     (S("exponential", ("R",)), r"\mathrm{e}^{\boldsymbol{J}_{\mathrm{R}}t}"),
     (S("characteristic polynomial"), r"p(\lambda)"),
     (S("determinant"), r"\det(\lambda\boldsymbol{I} - \boldsymbol{A})"),
@@ -54,6 +56,35 @@ SIDES: list[tuple[Side, str]] = [
     (S("real pair", parts=(q(-1), root(2))), r"-1 \pm \sqrt{2}"),
     (S("real pair", parts=(q(-1), add("a", "b"))), r"-1 \pm (a + b)"),
     (S("sum", parts=(S("matrix"), (q("c"), S("identity")))), r"\boldsymbol{A} + c\,\boldsymbol{I}"),
+    (S("dotted"), r"\dot{\boldsymbol{x}}"),
+    (S("dotted", argument=T, letter="q", order=2), r"\ddot{\boldsymbol{q}}(t)"),
+    (S("dotted", letter="x_hat"), r"\dot{\widehat{\boldsymbol{x}}}"),
+    (S("matrix", letter="A_hat"), r"\widehat{\boldsymbol{A}}"),
+    (S("step", argument=add("t", neg("T"))), r"\varepsilon(t - T)"),
+    (
+        S("blocks", ("2",), parts=(S("matrix"), S("zero"), q(0), q(1))),
+        r"\begin{bmatrix} \boldsymbol{A} & \boldsymbol{0} \\ 0 & 1 \end{bmatrix}",
+    ),
+    (S("interval", ("both",), T, parts=(q(0), q("T"))), r"0 \leq t < T"),
+    (S("interval", ("from",), T, parts=(q("T"),)), r"t \geq T"),
+    (S("interval", ("until",), T, parts=(q(4),)), "t < 4"),
+    (S("interval", ("otherwise",)), r"\text{otherwise}"),
+    (
+        S("cases", parts=(q(1), S("interval", ("until",), T, parts=(q(4),)), T, OTHERWISE)),
+        r"\begin{cases} 1, & t < 4 \\ t, & \text{otherwise} \end{cases}",
+    ),
+    (
+        S("sinusoid", parts=(q("a"), prod("omega", T), S("scalar", letter="phi"))),
+        r"a\,\cos(\omega t - \phi)",
+    ),
+    (S("sinusoid", parts=(q(1), T, S("scalar", letter="phi"))), r"\cos(t - \phi)"),
+    (S("turn", ("1", "1")), r"\uppi"),
+    (S("turn", ("-3", "4")), r"-\frac{3\uppi}{4}"),
+    (S("turn", ("0", "1")), "0"),
+    (S("arc", ("+",), parts=(q("r"),)), r"\arctan(r)"),
+    (S("arc", ("-",), parts=(q("r"),)), r"-\arctan(r)"),
+    (S("arc", ("-",), parts=(S("turn", ("1", "1")), q(2))), r"\uppi - \arctan(2)"),
+    (S("angle of", parts=(q("y"), q("x"))), r"\angle(x,\, y)"),
     (S("time derivative"), r"\frac{\mathrm{d}}{\mathrm{d}t}"),
     (S("characteristic polynomial", parts=(S("matrix"),)), r"p(\boldsymbol{A})"),
     (S("quotient", parts=(q(1), S("scalar", letter="p", order=1))), r"\frac{1}{p'}"),
@@ -109,3 +140,8 @@ def test_what_is_no_side_is_refused() -> None:
 def test_a_matrix_shifted_by_zero_stands_without_brackets() -> None:
     shifted = S("shifted", argument=q(0))
     assert side_box((shifted, S("vector", letter="v"))).latex == (r"\boldsymbol{A}\,\boldsymbol{v}")
+
+
+def test_an_unknown_interval_is_refused() -> None:
+    with pytest.raises(ValueError, match="no kind of interval is called 'never'"):
+        side_box(Symbol("interval", ("never",), T))
