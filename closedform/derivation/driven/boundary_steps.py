@@ -15,7 +15,9 @@ from closedform.response.driven.boundary import Block
 from closedform.response.driven.determined import PointConstants, stem_of_constants
 from closedform.response.driven.solution import DrivenSolution
 
-__all__ = ["conditions_step", "point_conditions", "state_side"]
+__all__ = ["DETERMINANT", "conditions_step", "constant_names", "point_conditions", "state_side"]
+
+DETERMINANT = Symbol("scalar", letter="Delta")
 
 
 def point_conditions(writing: Writing) -> Iterator[Statement]:
@@ -105,7 +107,7 @@ def _block(
         "constants": block.constants,
         "determinant": None
         if small
-        else Statement("point determinant", (Symbol("scalar", letter="Delta"), determinant)),
+        else Statement("point determinant", (DETERMINANT, determinant)),
         "sign": _sign(points, block.determinant, argument, determinant),
     }
 

@@ -92,6 +92,16 @@ MODELS: dict[str, dict[str, Any]] = {
         "inputs": {},
         "at_points": ["y(L) = 1", "y(2*L) = 0"],
     },
+    "shaft that whirls, clamped at one end": {
+        "equations": ["w'''' - w = 1"],
+        "inputs": {},
+        "at_points": ["w(0) = 0", "w'(0) = 0", "w(1) = 0", "w''(1) = 0"],
+    },
+    "held while it is struck": {
+        "equations": ["x'' + x = u"],
+        "inputs": {"u": "delta(t) + step(t - 1)"},
+        "at_points": ["x(0) = 0", "x(3) = 1"],
+    },
     "held at two instants": {
         "equations": ["x'' + 3*x' + 2*x = 4"],
         "inputs": {},

@@ -17,6 +17,7 @@ OWN = {
     "input_system",
     "driven_transition",
     "particular",
+    "conditions_at_points",
     "jumps",
     "driven_solution",
     "split",

@@ -7,7 +7,7 @@ from typing import Any
 
 from flint import acb, acb_mat
 
-from closedform.derivation.driven.boundary_steps import constant_names, state_side
+from closedform.derivation.driven.boundary_steps import DETERMINANT, constant_names, state_side
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.values import column_at, equal
 from closedform.derivation.driven.writing import Writing
@@ -105,6 +105,8 @@ def constant(spot: Spot, said: Said) -> Iterator[Finding]:
 def point_determinant(spot: Spot, said: Said) -> Iterator[Finding]:
     """The determinant of the equations of a block."""
     matrix, _ = spot.point_equations
+    same = said.statement.sides[0] == DETERMINANT
+    yield from whether(same, "determinant", "it has another letter")
     rows, columns = said.row["conditions"], said.row["constants"]
     block = acb_mat([[matrix[i, k] for k in columns] for i in rows])
     printed = ball_at(formula_of(said.statement.sides[1]), spot.names)
