@@ -69,6 +69,10 @@ def parts_of(solution: DrivenSolution) -> dict[str, Any]:
             model.rows[own.row]: _phasor(model, own) for own in solution.phasors if own is not None
         }
         told["transient"] = in_rows(model, steady.transient_formulas)
+    if solution.points is not None:
+        constants = solution.points.constants
+        told["constants"] = {c.name: plain(c.formula) for c in constants}
+        told["provided"] = list(map(plain, solution.points.provided))
     told["resonance"] = [_resonance(model, own) for own in solution.resonances]
     if solution.periodic:
         told["periodic"] = [_periodic(model, own) for own in solution.periodic]
