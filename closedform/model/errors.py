@@ -282,6 +282,8 @@ class UnknownStateError(ModelError):
         if self.nearest:
             return f"there is no state {quoted(self.name)}; did you mean '{self.nearest}'?"
         listed = ", ".join(self.states[:8]) + (", …" if len(self.states) > 8 else "")
+        if not listed:
+            return f"there is no state, and {quoted(self.name)} is none; take it away"
         return f"there is no state {quoted(self.name)}; the states are {listed}"
 
 

@@ -21,7 +21,7 @@ from closedform.notation.expression import FUNCTIONS
 from closedform.notation.greek import ascii_name
 from closedform.notation.latex.names import printed_key
 
-__all__ = ["MOST_STATES", "Names", "check_states", "check_time", "named_in"]
+__all__ = ["MOST_STATES", "Names", "check_states", "check_time", "named_at", "named_in"]
 
 MOST_STATES = 400
 LONGEST_NAME = 64
@@ -55,14 +55,19 @@ def named_in(table: Iterable[str], key: str, kind: str, names: Names, source: So
 
     Raises:  UnusableNameError, LookalikeNamesError.
     """
+    return named_at({str(name): f"{key}.{name}" for name in table}, kind, names, source)
+
+
+def named_at(places: Mapping[str, str], kind: str, names: Names, source: Source) -> Names:
+    """Return the names with those of `places`, which says of each under which key it stands.
+
+    Raises:  UnusableNameError, LookalikeNamesError.
+    """
     printed = {printed_key(name): name for name in (names.time, *names.taken)}
-    added = []
-    for name in table:
-        place = f"{key}.{name}"
-        check_name(str(name), place, source, time=names.time, taken=names.taken)
-        check_lookalike(str(name), place, source, printed)
-        added.append(str(name))
-    return names.added(added, kind)
+    for name, place in places.items():
+        check_name(name, place, source, time=names.time, taken=names.taken)
+        check_lookalike(name, place, source, printed)
+    return names.added(places, kind)
 
 
 def check_name(

@@ -12,7 +12,7 @@ from closedform.errors import Place
 from closedform.model.driven.contents import Contents, Weighed
 from closedform.model.driven.generator import Generator, generator_of
 from closedform.model.driven.initial import Start
-from closedform.model.driven.initial_errors import PointJetError
+from closedform.model.driven.initial_errors import ImpulseValueError, PointJetError
 from closedform.model.driven.instants import Order, order_in
 from closedform.model.driven.model import (
     DrivenModel,
@@ -26,6 +26,7 @@ from closedform.model.driven.signal import Signal
 from closedform.model.driven.signal_algebra import mapped, numbers_of
 from closedform.model.driven.solved_form import SolvedForm
 from closedform.model.driven.stacking import generator_names, stacked_matrix, state_names
+from closedform.model.driven.strikes import strikes_in
 from closedform.model.driven.timeline import Timeline, timeline_of
 from closedform.model.driven.values_at import element_text
 from closedform.model.errors import TooManyStatesError
@@ -229,7 +230,11 @@ class Assembly(Generic[T]):
         return tuple(found)
 
     def model(self, stacked: Model | ParametricModel) -> DrivenModel:
-        """Return the driven model, given its stacked one."""
+        """Return the driven model, given its stacked one.
+
+        Raises ImpulseValueError if an unknown or an output would be an impulse at an instant.
+        """
+        self._refuse_impulses()
         return DrivenModel(
             form=self.statement.form,
             field=self.field,
@@ -250,6 +255,25 @@ class Assembly(Generic[T]):
             times=stacked.times,
         )
 
-    @property
-    def _place(self) -> Place:
-        return self.source.at_name(self.form.key)
+    def _refuse_impulses(self) -> None:
+        """Raise an error for what follows from the inputs at each instant and holds impulses."""
+        form = self.form.reduction
+        weights = form.eliminated_from_inputs
+        rows = [] if weights is None else weights.to_list()
+        named = [
+            *((name, row, False) for name, row in zip(form.eliminated, rows, strict=False)),
+            *((one.name, one.of_inputs, True) for one in self.outputs),
+        ]
+        signals = self._timeline.signals
+        for name, of_inputs, output in named:
+            strike = strikes_in(self.field, of_inputs, signals)
+            if strike is not None:
+                given = plain(self.form.acting[strike.place].formula)
+                at = self.source.at(f"outputs.{name}") if output else self._equation_of(name)
+                raise ImpulseValueError(at, name, given, strike.at, output=output)
+
+    def _equation_of(self, name: str) -> Place:
+        """Where an unknown first stands in an equation."""
+        rows = self.statement.rows
+        found = (row.key for row in rows if any(jet.name == name for jet, _ in row.of_unknowns))
+        return self.source.at(next(found, self.form.key))

@@ -9,6 +9,8 @@ from functools import cached_property
 from closedform.algebra.field import BaseField, Scalar
 from closedform.errors import Place
 from closedform.model.driven.model import Balance, Jet
+from closedform.model.driven.signal import Signal
+from closedform.model.driven.signal_algebra import added, scaled
 from closedform.model.source import Source
 
 __all__ = ["BalanceSystem"]
@@ -23,6 +25,7 @@ class BalanceSystem:
     stands in `source`.  `preferred` are jets that are to be states if there is a choice, as
     values at the start are given for them.  States are in the order of the unknowns, each
     with its derivatives, or, `by_order`, derivatives after all that has fewer primes.
+    `signals` are the inputs as functions of the time, empty where these do not matter.
     `never_zero` says of an element that it vanishes for no values of the parameters;
     `guessed` are unknowns that nobody declared as such.
     """
@@ -38,6 +41,7 @@ class BalanceSystem:
     by_order: bool = False
     never_zero: Callable[[Scalar], bool] = bool
     guessed: frozenset[str] = frozenset()
+    signals: tuple[Signal, ...] = ()
 
     @cached_property
     def orders(self) -> dict[str, int]:
@@ -80,6 +84,16 @@ class BalanceSystem:
             | self.row((self.of_input(place), weight) for place, weight in balance.of_inputs)
             for balance in self.balances
         )
+
+    def cancels(self, weights: Mapping[int, Scalar]) -> bool:
+        """Whether a sum of weight · input is zero at all times, as 2·1 - 2 is."""
+        if not weights or not self.signals:
+            return not weights
+        parts = [scaled(self.signals[place], weight) for place, weight in weights.items()]
+        if len({part.repeat for part in parts}) > 1:
+            return False
+        total = added(parts)
+        return not total.bursts and not total.impulses
 
     def row(self, parts: Iterable[tuple[int, Scalar]]) -> dict[int, Scalar]:
         """Return a row with weights of one column added up, and none that is zero."""

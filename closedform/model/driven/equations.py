@@ -3,21 +3,25 @@
 from __future__ import annotations
 
 import re
+from collections.abc import Sequence
 from fractions import Fraction
 from typing import Generic, TypeVar
 
 from closedform.errors import Place
-from closedform.model.driven.balance_errors import NonlinearBalanceError
+from closedform.model.driven.balance_errors import DelayedUnknownError, NonlinearBalanceError
 from closedform.model.driven.balances import Shifted, linear_balance, unknowns_of
 from closedform.model.driven.columns import InputColumns
 from closedform.model.driven.numerals import Numerals
-from closedform.model.driven.reduction_errors import ForgottenParameterError
+from closedform.model.driven.reduction_errors import (
+    ForgottenInputError,
+    ForgottenParameterError,
+)
 from closedform.model.driven.roles import Roles
 from closedform.model.driven.signal_reading import signal_of
 from closedform.model.driven.statement import Row, Statement
 from closedform.model.entries import kind_of
 from closedform.model.errors import TooManyStatesError, WrongKindError
-from closedform.model.naming import MOST_STATES, named_in
+from closedform.model.naming import MOST_STATES, named_at
 from closedform.model.statement import array_of
 from closedform.notation.equation import read_equation
 from closedform.notation.expression import Expression, Negation, Sum
@@ -39,8 +43,9 @@ def stated_by_equations(
     inputs become columns.
 
     Raises:  the errors of ``balance_errors`` and ``signal_errors``, those of names,
-             ForgottenParameterError for names that make a term a product of unknowns as they
-             are declared nowhere, and what the reader of equations and the arithmetic raise.
+             ForgottenParameterError and ForgottenInputError for names that make a term a product
+             of unknowns, or one at another time, as they are declared nowhere, and what the
+             reader of equations and the arithmetic raise.
     """
     source = numerals.source
     texts = _texts(value, numerals)
@@ -52,7 +57,8 @@ def stated_by_equations(
     if not given:
         if len(unknowns) > MOST_STATES:
             raise TooManyStatesError(source.at("equations"), len(unknowns), MOST_STATES)
-        numerals.names = named_in(unknowns, "equations", "an unknown", numerals.names, source)
+        places = {name: _equation_of(name, sides) for name in unknowns}
+        numerals.names = named_at(places, "an unknown", numerals.names, source)
     roles = Roles(unknowns, columns.names, columns.time)
     guessed = frozenset() if given else frozenset(unknowns)
     primed = {name for pair in sides for side in pair for name, n in found_jets(side) if n}
@@ -61,13 +67,24 @@ def stated_by_equations(
             reading.row(text, pair, roles, f"equations[{k}]")
             for k, (text, pair) in enumerate(zip(texts, sides, strict=True), start=1)
         )
-    except NonlinearBalanceError as error:
+    except (DelayedUnknownError, NonlinearBalanceError) as error:
         within = dict.fromkeys(re.findall(r"\w+", error.term))
         names = tuple(name for name in within if name in guessed and name not in primed)
         if not names:
             raise
+        if isinstance(error, DelayedUnknownError):
+            facts = error.place, error.equation, error.term, names[0]
+            raise ForgottenInputError(*facts) from None
         raise ForgottenParameterError(error.place, error.equation, error.term, names) from None
     return Statement("equations", unknowns, rows, guessed)
+
+
+def _equation_of(name: str, sides: Sequence[Sides]) -> str:
+    """The key of the equation in which a name first stands."""
+    for k, pair in enumerate(sides, start=1):
+        if any(name == found for side in pair for found, _ in found_jets(side)):
+            return f"equations[{k}]"
+    return "equations"
 
 
 def _texts(value: object, numerals: Numerals[T]) -> list[str]:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import partial
+
 from closedform.errors import Place
 from closedform.model.driven.reduction_errors import listed_names
 from closedform.model.errors import ModelError
@@ -11,6 +13,7 @@ __all__ = [
     "ContradictoryInitialError",
     "DerivativeGivenError",
     "EarlyPointError",
+    "ImpulseValueError",
     "NoInstantError",
     "PointConstantError",
     "PointCountError",
@@ -132,6 +135,31 @@ class PointJetError(ModelError):
         return (
             f"{quoted(self.found)} holds the derivative of an input that stands in no equation; "
             "name a quantity of fewer primes"
+        )
+
+
+class ImpulseValueError(ModelError):
+    """An unknown, or an output, that would be an impulse itself at an instant."""
+
+    def __init__(self, place: Place, name: str, given: str, at: str, *, output: bool) -> None:
+        super().__init__(place, name, given, at)
+        self.name, self.given, self.at, self.output = name, given, at, output
+
+    def __reduce__(self) -> tuple[object, ...]:
+        facts = (self.place, self.name, self.given, self.at)
+        return partial(ImpulseValueError, *facts, output=self.output), ()
+
+    def _paragraph(self) -> str:
+        own = f"q_{self.name}"
+        how = (
+            f"take the output away, and add an equation that says what {own}' is"
+            if self.output
+            else f"write {own}' for {self.name} in the equations"
+        )
+        return (
+            f"{quoted(self.name)} follows at each instant from the states and from "
+            f"{quoted(self.given)}, which strikes at {self.at}: it would be an impulse itself, "
+            f"and that is no value; ask for its integral {own} instead, which jumps: {how}"
         )
 
 

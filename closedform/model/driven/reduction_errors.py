@@ -12,6 +12,7 @@ __all__ = [
     "AbsentUnknownError",
     "ContradictoryEquationsError",
     "FewEquationsError",
+    "ForgottenInputError",
     "ForgottenParameterError",
     "HiddenConstraintError",
     "ManyEquationsError",
@@ -61,13 +62,19 @@ def _balance(equations: int, unknowns: tuple[str, ...]) -> str:
 
 
 class AbsentUnknownError(ModelError):
-    """An unknown of 'states' that stands in no equation."""
+    """An unknown that stands in no equation; `equation` is that in which it cancels, if any."""
 
-    def __init__(self, place: Place, name: str) -> None:
-        super().__init__(place, name)
-        self.name = name
+    def __init__(self, place: Place, name: str, equation: str = "") -> None:
+        super().__init__(place, name, equation)
+        self.name, self.equation = name, equation
 
     def _paragraph(self) -> str:
+        if self.equation:
+            return (
+                f"'{self.name}' has the weight 0 in the equation {quoted(self.equation)} and "
+                "stands in no other, so that nothing determines it; correct the equation, or "
+                "leave the name out"
+            )
         return (
             f"'{self.name}' is among the states, but it stands in no equation; take it away, "
             "or add the equation that is missing"
@@ -191,6 +198,22 @@ class ForgottenParameterError(ModelError):
             f"{quoted(self.equation)} {are} declared nowhere, so that it would be a product of "
             f"unknowns; {listed_names(self.names)} {have} no primes: declare {them} in "
             f'[parameters], as {self.names[0]} = "positive"'
+        )
+
+
+class ForgottenInputError(ModelError):
+    """A term that is an unknown at another time, as its name was declared nowhere."""
+
+    def __init__(self, place: Place, equation: str, term: str, name: str) -> None:
+        super().__init__(place, equation, term, name)
+        self.equation, self.term, self.name = equation, term, name
+
+    def _paragraph(self) -> str:
+        return (
+            f"'{self.name}' in the term {quoted(self.term)} of the equation "
+            f"{quoted(self.equation)} is declared nowhere, so that it would be an unknown at "
+            f"another time; '{self.name}' has no primes: declare it in [inputs], as "
+            f'{self.name} = "sin(t)"'
         )
 
 

@@ -13,6 +13,7 @@ from closedform.model.driven.contents import Contents
 from closedform.model.driven.jet_rows import JetRows
 from closedform.model.driven.model import Balance, Reduction
 from closedform.model.driven.reduction import Reduced, reduced
+from closedform.model.driven.signal_algebra import mapped
 from closedform.model.errors import TooManyStatesError
 from closedform.model.naming import MOST_STATES
 from closedform.notation.plain import plain
@@ -73,6 +74,9 @@ class SolvedForm(Generic[T]):
             by_order=self.statement.form == "second order",
             never_zero=self.numerals.never_zero,
             guessed=self.statement.guessed,
+            signals=tuple(
+                mapped(column.signal, self.convert) for column in self.columns.columns[: self.typed]
+            ),
         )
         if len(system.lower) > MOST_STATES:
             raise TooManyStatesError(self.place, len(system.lower), MOST_STATES)

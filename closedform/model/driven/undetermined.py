@@ -23,6 +23,7 @@ from closedform.model.driven.reduction_errors import (
     RedundantEquationError,
     SingularEquationsError,
 )
+from closedform.notation.jets import found_jets
 
 __all__ = ["refuse", "refuse_counts"]
 
@@ -35,7 +36,7 @@ def refuse_counts(system: BalanceSystem) -> None:
     equations, unknowns = len(system.balances), len(system.unknowns)
     for name in system.unknowns:
         if name not in system.orders:
-            raise AbsentUnknownError(system.source.at("states"), name)
+            _refuse_absent(system, name)
     if equations == unknowns:
         return
     _refuse_dependent(system)
@@ -47,6 +48,15 @@ def refuse_counts(system: BalanceSystem) -> None:
         name for name in open_ones if name in system.guessed and not system.orders[name]
     )
     raise FewEquationsError(place, equations, system.unknowns, open_ones, suspects)
+
+
+def _refuse_absent(system: BalanceSystem, name: str) -> NoReturn:
+    """Raise the error for an unknown with no weight, in whose equation it cancels if typed."""
+    for k, balance in enumerate(system.balances):
+        typed = (jet for side in (balance.left, balance.right) for jet in found_jets(side))
+        if any(name == found for found, _ in typed):
+            raise AbsentUnknownError(system.place(k), name, balance.text)
+    raise AbsentUnknownError(system.source.at("states"), name)
 
 
 def refuse(system: BalanceSystem) -> NoReturn:
@@ -67,7 +77,7 @@ def _refuse_dependent(system: BalanceSystem) -> None:
     found = eliminated(system.field, _marked(system, system.rows), [range(len(system.column))])
     for row in found.rest:
         places = [c - first for c in row if c >= first]
-        if not any(c < first for c in row):
+        if system.cancels({c - len(system.column): e for c, e in row.items() if c < first}):
             last = max(places)
             others = system.numbered(k for k in places if k != last)
             equation = system.numbered([last])[0]

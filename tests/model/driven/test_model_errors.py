@@ -13,6 +13,7 @@ from closedform.model.driven.initial_errors import (
     ContradictoryInitialError,
     DerivativeGivenError,
     EarlyPointError,
+    ImpulseValueError,
     NoInstantError,
     PointConstantError,
     PointCountError,
@@ -25,6 +26,7 @@ from closedform.model.driven.reduction_errors import (
     AbsentUnknownError,
     ContradictoryEquationsError,
     FewEquationsError,
+    ForgottenInputError,
     ForgottenParameterError,
     HiddenConstraintError,
     ManyEquationsError,
@@ -40,6 +42,7 @@ HERE = Place("bench.toml", "some.key")
 ONE, TWO = (1, "x' = y"), (2, "2*x' = 2*y")
 REDUCTION: list[tuple[ModelError, str]] = [
     (AbsentUnknownError(HERE, "x"), "'x' is among the states, but it stands in no equation"),
+    (AbsentUnknownError(HERE, "x", "0*x = y'"), "'x' has the weight 0 in the equation '0*x = y''"),
     (
         FewEquationsError(HERE, 1, ("x", "F"), ("F",), ("F",)),
         (
@@ -85,6 +88,10 @@ REDUCTION: list[tuple[ModelError, str]] = [
         ForgottenParameterError(HERE, "k*c*x = y'", "k*c*x", ("k", "c")),
         "'k' and 'c' have no primes: declare them in [parameters], as k = \"positive\"",
     ),
+    (
+        ForgottenInputError(HERE, "y' = u(t - 1)", "u(t - 1)", "u"),
+        "'u' in the term 'u(t - 1)' of the equation 'y' = u(t - 1)' is declared nowhere",
+    ),
     (NoStateLeftError(HERE), "the equations leave no state"),
 ]
 INITIAL: list[tuple[ModelError, str]] = [
@@ -100,6 +107,11 @@ INITIAL: list[tuple[ModelError, str]] = [
         "'x''' follows from the equations; take it away, and give 'x' and 'x''",
     ),
     (DerivativeGivenError(HERE, "i'", ()), "'i'' follows from the equations; take it away."),
+    (
+        ImpulseValueError(HERE, "y", "d", "1", output=False),
+        "'y' follows at each instant from the states and from 'd', which strikes at 1",
+    ),
+    (ImpulseValueError(HERE, "y", "d", "1", output=True), "take the output away, and add an"),
     (EarlyPointError(HERE, "x(-1) = 0", "0"), "before the start of time, 0; set 'start'"),
     (NoInstantError(HERE, "x'"), "write it in brackets, as x'(0)"),
     (PointConstantError(HERE, "1 = 2"), "no unknown is left in '1 = 2'"),
