@@ -9,7 +9,7 @@ from functools import lru_cache
 from itertools import zip_longest
 
 from closedform.algebra.field import BaseField, Scalar
-from closedform.algebra.parameter_field import ParameterField
+from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.algebra.surds import SurdSum
 from closedform.notation.expression import ZERO, Expression, Name
 from closedform.notation.rational_formula import weighted_rational
@@ -103,6 +103,10 @@ class _OfNumbers:
         field = ParameterField()
         return field, field.scalar(amount.value)
 
+    def right_angles(self, frequency: Coefficient, time: Scalar) -> int | None:
+        _ = frequency  # its product with another time is algebraic, and pi is not
+        return None if time else 0
+
     def element(self, wide: ParameterField, element: Scalar) -> Scalar:
         return wide.scalar(self.field.surds(element))
 
@@ -169,6 +173,15 @@ class _OfParameters:
 
     def rational(self, amount: Amount | Scalar) -> tuple[ParameterField, Scalar] | None:
         return self.writing, amount
+
+    def right_angles(self, frequency: Coefficient, time: Scalar) -> int | None:
+        if not time:
+            return 0
+        if PI not in self.writing.parameters:
+            return None
+        angle = _into(self.field, self.writing, time) * frequency
+        turns = self.writing.constant(2 * angle / self.writing.symbol(PI))
+        return int(turns) if turns is not None and turns.denominator == 1 else None
 
     def element(self, wide: ParameterField, element: Scalar) -> Scalar:
         return _into(self.field, wide, element)

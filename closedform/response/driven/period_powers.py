@@ -63,7 +63,7 @@ def weighted_power_sum(
             return level
         count, gone = strokes
         left = joined([level, sum_of([ONE, negated(gone)])])
-        return opened(sum_of([left, negated(joined([once, count, gone]))]))
+        return opened(sum_of([left, negated(joined([count, once, gone]))]))
     names = _NAMES
     time, period = _element("?theta", *theta), _element("?T", *length)
     n, inverse_q = names.symbol("?N"), names.symbol("?u")

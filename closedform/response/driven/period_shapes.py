@@ -17,7 +17,7 @@ Source:  common practice (geometric sums).
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 
 from closedform.algebra.field import BaseField, Scalar
@@ -31,7 +31,6 @@ from closedform.notation.expression import (
     Quotient,
     number,
     power_of,
-    product,
 )
 from closedform.notation.terms import negated, opened, sum_of
 from closedform.response.by_mode import ModePart
@@ -109,13 +108,12 @@ class Shapes:
 
     def divisor(self, part: ModePart) -> Expression:
         """Return what the sum of a pair is divided by."""
-        w, circular = self.writing.frequency(part), part.kind == "circular"
         if part.rate == ZERO:
-            half = self.writing.term(w, self.period / 2, [])
-            return Call("sin" if circular else "sinh", half)
-        kernel = Call("cos" if circular else "cosh", self.writing.term(w, self.period, []))
+            return self._function(part, Linear(None, self.period / 2, self._zero), even=False)
+        kernel = self._function(part, Linear(None, self.period, self._zero), even=True)
         once, twice = (self._power(part, Count(fixed=k)) for k in (1, 2))
-        return sum_of([ONE, negated(product((number(2), once, kernel))), twice])
+        middle = negated(joined([number(2), once, kernel]))
+        return sum_of([term for term in (ONE, middle, twice) if term not in _NOTHING])
 
     def _real(self, struck: Struck, held: Sequence[Held]) -> tuple[Expression, list[Expression]]:
         part, count, at = struck.part, struck.count, self._at(struck)
@@ -146,7 +144,7 @@ class Shapes:
             angle = self.writing.term(w, half, [count.formula])
             at = self._later(struck, -half * (1 + count.less), half)
         function = "sin" if part.kind == "circular" else "sinh"
-        front = Quotient(Call(function, angle), self.divisor(part))
+        front = joined([Call(function, angle), Quotient(ONE, self.divisor(part))])
         return front, [self._kernel(part, h, at) for h in held]
 
     def _damped(self, struck: Struck, held: Held) -> Expression:
@@ -178,17 +176,26 @@ class Shapes:
         return exponential(self.writing.term(rate, length, [count.formula]))
 
     def _kernel(self, part: ModePart, held: Held, at: Linear) -> Expression:
-        """cos, sin, cosh or sinh of w times a time, a sign of the angle put outside."""
-        if part.kind == "real":
-            return ONE
-        even, odd = ("cos", "sin") if part.kind == "circular" else ("cosh", "sinh")
-        angle = linear(self.writing, self._one, self.writing.frequency(part), at, as_angle=True)
-        if angle == ZERO:
-            return ONE if held.even else ZERO
+        """1 of a real mode; cos, sin, cosh or sinh of w times a time of a pair."""
+        return ONE if part.kind == "real" else self._function(part, at, even=held.even)
+
+    def _function(self, part: ModePart, at: Linear, *, even: bool) -> Expression:
+        """The even or the odd function of a pair, right angles worked out, a sign outside."""
+        w = self.writing.frequency(part)
+        turns = self.writing.right_angles(w, at.constant) if part.kind == "circular" else None
+        minus = False
+        if turns is not None:
+            at = replace(at, constant=self._zero)
+            minus = turns % 4 in ((1, 2) if even else (2, 3))
+            even = even != bool(turns % 2)
+        names = ("cos", "sin") if part.kind == "circular" else ("cosh", "sinh")
+        angle = linear(self.writing, self._one, w, at, as_angle=True)
         if isinstance(angle, Negation):
-            inside = angle.operand
-            return Call(even, inside) if held.even else Negation(Call(odd, inside))
-        return Call(even if held.even else odd, angle)
+            angle, minus = angle.operand, minus != (not even)
+        value: Expression = Call(names[0] if even else names[1], angle)
+        if angle == ZERO:
+            value = ONE if even else ZERO
+        return Negation(value) if minus and value != ZERO else value
 
     def _at(self, struck: Struck) -> Linear:
         """The time since the last stroke."""
@@ -222,6 +229,9 @@ class Shapes:
         return self.field.domain.one
 
 
+_NOTHING = (ZERO, Negation(ZERO))
+
+
 def exponential(exponent: Expression) -> Expression:
     """Return e to an exponent."""
     return ONE if exponent == ZERO else Call("exp", exponent)
@@ -232,5 +242,5 @@ def _name(variable: str | None) -> Expression:
 
 
 def _difference(one: Expression, other: Expression) -> Expression:
-    kept = [term for term in (one, negated(other)) if term not in {ZERO, Negation(ZERO)}]
+    kept = [term for term in (one, negated(other)) if term not in _NOTHING]
     return opened(sum_of(kept)) if kept else ZERO

@@ -34,6 +34,7 @@ from closedform.notation.expression import (
 )
 from closedform.notation.terms import negated, opened, sum_of
 from closedform.response.by_mode import ModePart
+from closedform.response.driven.composition import put_in_place
 from closedform.response.modes import Amount
 
 __all__ = [
@@ -132,6 +133,9 @@ class Writing(Protocol):
     def rational(self, amount: Amount | Scalar) -> tuple[ParameterField, Scalar] | None:
         """Return an amount as an element of rational functions, where it is one."""
 
+    def right_angles(self, frequency: Coefficient, time: Scalar) -> int | None:
+        """Return the number of right angles in frequency · time, where it is a whole one."""
+
     def element(self, wide: ParameterField, element: Scalar) -> Scalar:
         """Return an element of the model in a wider field of rational functions."""
 
@@ -169,7 +173,8 @@ def linear(
     if len(inner) == 1:
         return apart
     inside = opened(sum_of([writing.term(None, s, factors) for s, factors in inner]))
-    together = writing.term(coefficient, one, [inside])
+    outside = writing.term(coefficient, one, [Name(TIME)])
+    together = put_in_place(outside, {TIME: inside})  # its sign is kept outside
     forms = [apart, together] if as_angle else [together, apart]
     return min(forms, key=_length)
 
@@ -212,8 +217,12 @@ def joined(factors: Sequence[Expression]) -> Expression:
         if isinstance(own, Negation):
             minus, own = not minus, own.operand
         if isinstance(own, Quotient):
-            below += factors_of(own.denominator)
-            own = own.numerator
+            divisor, own = own.denominator, own.numerator
+            if isinstance(divisor, Negation):
+                minus, divisor = not minus, divisor.operand
+            below += factors_of(divisor)
+            if isinstance(own, Negation):
+                minus, own = not minus, own.operand
         above += factors_of(own)
     if ZERO in above:
         return ZERO

@@ -317,6 +317,24 @@ def test_blows_every_half_turn_do_not_meet_the_oscillator() -> None:
     assert periodic.meets == periodic.provided == ()
 
 
+def test_right_angles_are_worked_out() -> None:
+    response = response_to(
+        {
+            "equations": ["x'' + 9*x = F"],
+            "inputs": {
+                "F": {
+                    "pieces": [{"from": "0", "to": "pi/3", "is": "5*sin(3*t)"}],
+                    "period": "2*pi/3",
+                }
+            },
+            "initial": {"x": 0, "x'": 0},
+        }
+    )
+    periodic = only(response)
+    assert plain(periodic.stretches[1].rows[0]) == "-5*pi*n*cos(3*tau)/18"
+    assert [plain(f) for f in periodic.carried] == ["-5*pi*n/18", "0"]
+
+
 def test_a_pair_that_may_meet_the_period_is_named() -> None:
     own = undamped("T", parameters={"w": "positive", "T": "positive"})
     periodic = only(response_to(own))

@@ -50,6 +50,16 @@ KINDS: dict[str, dict[str, Any]] = {
         "inputs": {"F": {"is": "delta(t)", "period": "2*pi/w"}},
         "initial": {"x": 0, "x'": 0},
     },
+    "half waves in step": {
+        "equations": ["x'' + 9*x = F", "y' = x - y + F"],
+        "inputs": {
+            "F": {
+                "pieces": [{"from": "0", "to": "pi/3", "is": "5*sin(3*t)"}],
+                "period": "2*pi/3",
+            }
+        },
+        "initial": {"x": 0, "x'": 0, "y": 0},
+    },
     "infusions, added up": {
         "equations": ["c' = -k*c + q/V", "w' = c"],
         "parameters": dict.fromkeys(("k", "V", "R", "h", "T"), "positive"),
