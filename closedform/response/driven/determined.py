@@ -218,11 +218,14 @@ def written(found: PointSolution, names: Sequence[str], case: Case | None) -> Po
     """
     writer = PointWriter(found.numbers, case)
     constants = _constants(found, names, writer)
-    if found.other is not None:
-        second = PointWriter(found.other.numbers, case)
-        others = _constants(found.other, names, second)
+    second = [] if found.other is None else [(found.other, PointWriter(found.other.numbers, case))]
+    ways = [(found, writer), *second]
+    for own, plain_writer in ways[:]:
+        ways += [(own, other) for other in plain_writer.others()]
+    for own, other in ways[1:]:
+        others = _constants(own, names, other)
         if _length(others) < _length(constants):
-            found, writer, constants = found.other, second, others
+            found, writer, constants = own, other, others
     arguments: list[SignArgument | None] = []
     provided: list[Expression] = []
     domain = None if case is None else _with_numbers(found.numbers, writer, case.domain)

@@ -6,7 +6,7 @@ Exponentials of both signs are put together to cosh and sinh where that is short
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from functools import cached_property, reduce
 from itertools import product as every_choice
@@ -14,9 +14,12 @@ from operator import mul
 from typing import Any
 
 from closedform.algebra.adjoined import Adjoined, AdjoinedNumber
+from closedform.algebra.equations import linear_solution
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.surds import SurdSum
+from closedform.errors import Place
+from closedform.notation.errors import FormulaError
 from closedform.notation.expression import (
     ONE,
     Call,
@@ -34,6 +37,7 @@ from closedform.notation.expression import (
     power_of,
     product,
 )
+from closedform.notation.rational import rational_value
 from closedform.notation.rational_formula import rational_formula
 from closedform.notation.terms import negated, opened, radical_formula, sum_of, surd_formula
 from closedform.response.driven.composition import element_formula, scaled
@@ -48,14 +52,72 @@ _MOST = 3
 
 @dataclass(frozen=True)
 class PointWriter:
-    """Writes elements of a field with adjoined numbers; `case` is None without parameters."""
+    """Writes elements of a field with adjoined numbers; `case` is None without parameters.
+
+    `chosen` are parameters with what stands for them in every formula, of the writing field.
+    """
 
     numbers: Adjoined
     case: Case | None
+    chosen: tuple[tuple[str, Scalar], ...] = ()
 
     def formula(self, element: Scalar) -> Expression:
         """Return an element in the shortest form that is tried."""
-        return self._written(self._put(element))
+        put = self._put(element)
+        return self._written(self._writing.substituted(put, dict(self.chosen)))
+
+    def others(self) -> list[PointWriter]:
+        """Return writers that put a frequency of the case for a parameter: k = m omega^2."""
+        return [replace(self, chosen=tuple(own.items())) for own in self._by_letters]
+
+    @cached_property
+    def _by_letters(self) -> list[dict[str, Scalar]]:
+        base, writing = self.numbers.base, self._writing
+        if self.case is None or not isinstance(base, ParameterField):
+            return []
+        found: list[dict[str, Scalar]] = []
+        for mode in self.case.modes:
+            if mode.regime.kind not in ("circular", "hyperbolic") or not mode.names:
+                continue
+            square = mode.factor.roots.discriminant
+            square = square if mode.regime.kind == "hyperbolic" else -square
+            equation = writing.symbol(mode.names[0]) ** 2 - base.into(writing, square)
+            for name in base.free:
+                solved = linear_solution(writing, equation, name)
+                if solved is not None and not solved.denom.is_ground:
+                    continue
+                if solved is not None:
+                    found.append({name: solved})
+        return found
+
+    def _forms(self, element: Scalar) -> list[Scalar]:
+        """The element, and the same with the abbreviations of the case, over the writing field."""
+        forms = [element]
+        for name, solved in self._abbreviations:
+            forms += [self._writing.substituted(form, {name: solved}) for form in forms]
+        return forms
+
+    @cached_property
+    def _abbreviations(self) -> list[tuple[str, Scalar]]:
+        """Parameters, each by the abbreviation that stands for it."""
+        base, writing = self.numbers.base, self._writing
+        if self.case is None or not isinstance(base, ParameterField):
+            return []
+        formulas = {q.name: q.formula for q in self.case.quantities if q.origin != "roots"}
+        found = []
+        for name, parameter, _ in self.case.abbreviated:
+            formula = formulas.get(name)
+            if formula is None or parameter not in base.parameters:
+                continue
+            try:
+                value = rational_value(formula, base, Place())
+            except FormulaError:  # it has a root in it
+                continue
+            equation = writing.symbol(name) - base.into(writing, value)
+            solved = linear_solution(writing, equation, parameter)
+            if solved is not None:
+                found.append((parameter, solved))
+        return found
 
     # The field in which formulas are written
 
@@ -74,6 +136,7 @@ class PointWriter:
         base = self.numbers.base
         if self.case is not None and isinstance(base, ParameterField):
             letters = [n for m in self.case.modes for n in m.names]
+            letters += [q.name for q in self.case.quantities if q.name not in letters]
             entries = [e for row in self.case.branch.matrix.to_list() for e in row]
             held = frozenset().union(*map(base.names_in, entries))
             first = [n for n in base.parameters if n in held]
@@ -210,7 +273,7 @@ class PointWriter:
     def _meaning(self, n: AdjoinedNumber) -> Expression:
         match n.kind:
             case "exp":
-                return Call("exp", element_formula(self.numbers.base, n.amount))
+                return Call("exp", self._multiple(Fraction(1), n.amount))
             case "root":
                 return Call("sqrt", number(n.number))
             case "cosine":
@@ -229,7 +292,7 @@ class PointWriter:
         if isinstance(base, ParameterField):
             root, _ = self._letters[n.core]
             angle = root * base.into(self._writing, n.amount)
-            return self._told(rational_formula(self._writing, angle))
+            return self._told(self._shortest(angle))
         core, amount = base.surds(n.core), base.surds(n.amount)
         if core.is_rational:
             size = abs(core.as_fraction())
@@ -246,7 +309,14 @@ class PointWriter:
 
     def _multiple(self, count: Fraction, element: Scalar) -> Expression:
         base = self.numbers.base
-        return element_formula(base, element * base.scalar(count))
+        whole = element * base.scalar(count)
+        if isinstance(base, ParameterField):
+            return self._shortest(base.into(self._writing, whole))
+        return element_formula(base, whole)
+
+    def _shortest(self, element: Scalar) -> Expression:
+        forms = [rational_formula(self._writing, form) for form in self._forms(element)]
+        return min(forms, key=operations)
 
 
 def _root_token(place: int) -> str:
