@@ -33,6 +33,7 @@ from closedform.response.driven.functions import Interval, Summand, Switch
 __all__ = [
     "constant_formula",
     "element_formula",
+    "in_front",
     "interval_formula",
     "put_in_place",
     "renamed",
@@ -208,7 +209,25 @@ def _added(terms: Sequence[Expression]) -> Expression:
                 kept.append(term)
     if total or not kept:
         kept.insert(0 if total > 0 else len(kept), number(total))
-    return opened(sum_of(kept))
+    whole = opened(sum_of(kept))
+    apart = [part for term in kept for part in _distributed(term)]
+    return whole if len(apart) == len(kept) else min(whole, _added(apart), key=operations)
+
+
+def _distributed(term: Expression) -> list[Expression]:
+    """The terms of a product of a sum with one factor."""
+    match term:
+        case Negation(operand):
+            return [negated(part) for part in _distributed(operand)]
+        case Product((factor, Sum(terms))):
+            return [
+                Negation(product((factor, part.operand)))
+                if isinstance(part, Negation)
+                else product((factor, part))
+                for part in terms
+            ]
+        case _:
+            return [term]
 
 
 def _over_one(terms: Sequence[Expression]) -> list[Expression]:
@@ -221,17 +240,33 @@ def _over_one(terms: Sequence[Expression]) -> list[Expression]:
         alike.setdefault(below, []).append(negated(above) if minus else above)
     found: list[Expression] = []
     for below, several in alike.items():
-        fronts, whole = _in_front(several)
+        fronts, whole = in_front(several)
         above = product((*fronts, whole)) if fronts else whole
         if below != ONE and isinstance(above, Negation):
             found.append(Negation(Quotient(above.operand, below)))
         else:
             found.append(above if below == ONE else Quotient(opened(above), below))
-    return min((list(terms), found), key=lambda form: operations(sum_of(form)))
+    shorter = min((list(terms), found), key=lambda form: operations(sum_of(form)))
+    return [_with_difference_turned(term) for term in shorter]
 
 
-def _in_front(terms: Sequence[Expression]) -> tuple[list[Expression], Expression]:
-    """The factors that all terms share, and the sum of what is left of them."""
+def _with_difference_turned(term: Expression) -> Expression:
+    """-f (a - b) as f (b - a)."""
+    if not isinstance(term, Negation):
+        return term
+    inside = term.operand
+    above = inside.numerator if isinstance(inside, Quotient) else inside
+    factors = list(factors_of(above))
+    for place, factor in enumerate(factors):
+        if isinstance(factor, Sum) and any(isinstance(t, Negation) for t in factor.terms):
+            turned = opened(sum_of([negated(t) for t in factor.terms]))
+            whole = product([*factors[:place], turned, *factors[place + 1 :]])
+            return Quotient(whole, inside.denominator) if isinstance(inside, Quotient) else whole
+    return term
+
+
+def in_front(terms: Sequence[Expression]) -> tuple[list[Expression], Expression]:
+    """Return the factors that all terms share, and the sum of what is left of them."""
     if len(terms) < 2:
         return [], sum_of(terms)
     parts = [list(factors_of(t.operand if isinstance(t, Negation) else t)) for t in terms]

@@ -50,7 +50,6 @@ from closedform.response.driven.point_values import HighFactorError
 from closedform.response.driven.point_writing import (
     PointWriter,
     multiplied,
-    with_hyperbolic,
 )
 from closedform.response.parametric.case import Case
 
@@ -106,7 +105,7 @@ class PointConstants:
         fronts = {s.place: known[s.constant.named] for s in summands if s.constant.named}
         return tuple(
             tuple(
-                multiplied(fronts[place], with_hyperbolic(formula))
+                multiplied(fronts[place], self.writer.hyperbolic(formula))
                 if place in fronts and formula != ZERO
                 else formula
                 for place, formula in enumerate(row)

@@ -40,7 +40,7 @@ from closedform.notation.expression import (
 from closedform.notation.rational import rational_value
 from closedform.notation.rational_formula import rational_formula
 from closedform.notation.terms import negated, opened, radical_formula, sum_of, surd_formula
-from closedform.response.driven.composition import element_formula, scaled
+from closedform.response.driven.composition import element_formula, in_front, scaled
 from closedform.response.parametric.case import Case
 from closedform.response.parametric.modes import perfect_root
 
@@ -118,6 +118,43 @@ class PointWriter:
             if solved is not None:
                 found.append((parameter, solved))
         return found
+
+    def hyperbolic(self, formula: Expression) -> Expression:
+        """Return a formula with cosh and sinh for exponentials of both signs, where shorter."""
+        formula = with_hyperbolic(formula)
+        match formula:
+            case Negation(operand):
+                return negated(self.hyperbolic(operand))
+            case Quotient(above, below):
+                return multiplied(self.hyperbolic(above), Quotient(ONE, below))
+            case Product((*fronts, Sum() as last)):
+                return multiplied(product(fronts), self.hyperbolic(last))
+            case Sum((first, second)):
+                return min(formula, self._paired(first, second) or formula, key=operations)
+            case _:
+                return formula
+
+    def _paired(self, first: Expression, second: Expression) -> Expression | None:
+        """A e^u + b e^-u as (a + b) cosh u + (a - b) sinh u."""
+        parts = [_of_power(first), _of_power(second)]
+        if parts[0] is None or parts[1] is None:
+            return None
+        (one, up), (other, down) = parts[0], parts[1]
+        if negated(up) != down:
+            return None
+        try:
+            a, b = (rational_value(e, self._writing, Place()) for e in (one, other))
+        except FormulaError:  # it has a root in it
+            return None
+        if isinstance(up, Negation):
+            a, b, up = b, a, up.operand
+        terms = [
+            multiplied(rational_formula(self._writing, amount), Call(function, up))
+            for amount, function in ((a + b, "cosh"), (a - b, "sinh"))
+            if amount
+        ]
+        fronts, whole = in_front(terms)
+        return product((*fronts, whole)) if fronts else whole
 
     # The field in which formulas are written
 
@@ -405,6 +442,18 @@ def multiplied(front: Expression, formula: Expression) -> Expression:
         apart = opened(sum_of([multiplied(front, term) for term in formula.terms]))
         return min((inside, apart), key=operations)
     return _multiplied(front, formula)
+
+
+def _of_power(term: Expression) -> tuple[Expression, Expression] | None:
+    """(amount, u) of a term amount · e^u."""
+    inside = term.operand if isinstance(term, Negation) else term
+    factors = list(factors_of(inside))
+    powers = [f for f in factors if isinstance(f, Call) and f.function == "exp"]
+    if len(powers) != 1:
+        return None
+    factors.remove(powers[0])
+    amount = product(factors) if factors else ONE
+    return (negated(amount) if isinstance(term, Negation) else amount), powers[0].argument
 
 
 def _in_powers(factors: Sequence[Expression]) -> list[Expression]:
