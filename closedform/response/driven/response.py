@@ -89,6 +89,11 @@ class DrivenResponse:
             f"{name}({time}) = {plain(formula)}"
             for name, formula in zip(rows, solution.solution, strict=True)
         ]
+        if solution.points is not None:
+            lines += [
+                f"{c.name} = {plain(c.formula)}" for c in solution.points.constants if not c.put_in
+            ]
+            lines += [f"provided that {plain(f)} != 0" for f in solution.points.provided]
         for own in solution.periodic:
             start = "" if own.start == ZERO else f"{plain(own.start)} + "
             begun = f"{start}({own.number} - 1)*{plain(own.period)}"
