@@ -37,7 +37,6 @@ __all__ = [
 
 _SETTLED = 130
 """After this many times that halve it, nothing of a decaying term is seen."""
-_DOUBLINGS = 40
 
 
 def term(spot: Spot, said: Said) -> Iterator[Finding]:
@@ -155,25 +154,11 @@ def stability(spot: Spot, step: Step) -> Iterator[Finding]:
     verdict = step.facts["verdict"]
     if verdict == "undecided":
         return
-    contracts = _half_time(spot) is not None
+    contracts = spot.half_time is not None
     if verdict == "stable":
         yield from whether(contracts, "stability", "no power of e^A was found that contracts")
     else:
         yield from whether(not contracts, "stability", "the free motion decays")
-
-
-def _half_time(spot: Spot) -> acb | None:
-    """A time after which e^(At) at least halves every vector; None if none is found."""
-    size = max((abs(e).upper() for e in spot.a.entries()), default=arb(0))
-    time = acb(1 / (1 + arb(size.mid())))
-    n = spot.a.nrows()
-    for _ in range(_DOUBLINGS):
-        moved = (spot.a * time).exp()
-        largest = max((abs(e).upper() for e in moved.entries()), default=arb(0))
-        if bool(largest * n < arb(1) / 2):
-            return time
-        time = 2 * time
-    return None
 
 
 def steady(spot: Spot, said: Said) -> Iterator[Finding]:
@@ -200,7 +185,7 @@ def transient(spot: Spot, said: Said) -> Iterator[Finding]:
     if row is None:
         yield Fault("transient", "it is of no state and no output of the model")
         return
-    half = _half_time(spot)
+    half = spot.half_time
     if half is None:
         yield undecided("transient")
         return

@@ -27,6 +27,8 @@ __all__ = ["PeriodSpot", "Spot"]
 
 SERIES = 12
 """Terms of the power series by which inputs and printed formulas are derived."""
+_DOUBLINGS = 40
+"""So many doublings of a time are tried before the free motion is said not to decay."""
 
 
 @dataclass(frozen=True)
@@ -108,7 +110,14 @@ class Spot:
         return acb_mat(upper + lower)
 
     def times(self, place: int) -> tuple[acb, ...]:
-        """Return two instants inside the interval that begins at a place."""
+        """Return two instants inside the interval that begins at a place, the same each time."""
+        return self._times[place]
+
+    @cached_property
+    def _times(self) -> tuple[tuple[acb, ...], ...]:
+        return tuple(map(self._inside, self.places))
+
+    def _inside(self, place: int) -> tuple[acb, ...]:
         low = self.instants[place]
         if place + 1 < len(self.instants):
             width = self.instants[place + 1] - low
@@ -243,6 +252,20 @@ class Spot:
         return acb_mat(rows), acb_mat(right)
 
     @cached_property
+    def half_time(self) -> acb | None:
+        """A time after which e^(At) at least halves every vector; None if none is found."""
+        size = max((abs(e).upper() for e in self.a.entries()), default=arb(0))
+        time = acb(1 / (1 + arb(size.mid())))
+        n = self.a.nrows()
+        for _ in range(_DOUBLINGS):
+            moved = (self.a * time).exp()
+            largest = max((abs(e).upper() for e in moved.entries()), default=arb(0))
+            if bool(largest * n < arb(1) / 2):
+                return time
+            time = 2 * time
+        return None
+
+    @cached_property
     def point_constants(self) -> acb_mat:
         """The constants, from the equations."""
         matrix, right = self.point_equations
@@ -277,8 +300,18 @@ class Spot:
 
     def state_at(self, place: int, t: acb, *, forced: bool = False) -> acb_mat:
         """Return x(t) in an interval."""
+        known = self._states.setdefault((place, forced), [])
+        for instant, state in known:
+            if instant is t:  # most statements are looked at in the same two instants
+                return state
         motion = self.forced_motion if forced else self.motion
-        return self.carried(motion[place], place, t)
+        state = self.carried(motion[place], place, t)
+        known.append((t, state))
+        return state
+
+    @cached_property
+    def _states(self) -> dict[tuple[int, bool], list[tuple[acb, acb_mat]]]:
+        return {}
 
     def rows_of(self, state: acb_mat, inputs: acb_mat) -> list[acb]:
         """Return states, eliminated unknowns and outputs."""
