@@ -127,6 +127,7 @@ def render(
         "title": derivation.title,
         "steps": steps,
         "depth": depth,
+        "shown": frozenset(step.kind for step in steps),
         "time": _time(derivation),
         "form": Symbol("matrix", ("R",) if "real_form" in kinds else (), letter="J"),
         "foot": _shortened(derivation.title),

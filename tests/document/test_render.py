@@ -22,6 +22,7 @@ from closedform.document.render import (
 from closedform.document.writeup import write_up
 from closedform.errors import InputError
 from closedform.model.building import system
+from tests.document.driven_samples import DRIVEN_SAMPLES
 from tests.document.parametric_samples import PARAMETRIC_SAMPLES
 from tests.document.samples import SAMPLES, hostile, one_state, oscillator, two_real
 
@@ -77,7 +78,7 @@ def test_depths_select_the_steps() -> None:
 
 def test_every_part_is_rendered_by_some_sample() -> None:
     parts = (templates_folder() / "latex" / "steps").iterdir()
-    makers = (*SAMPLES.values(), *PARAMETRIC_SAMPLES.values())
+    makers = (*SAMPLES.values(), *PARAMETRIC_SAMPLES.values(), *DRIVEN_SAMPLES.values())
     kinds = {step.kind for make in makers for step in make().steps}
     assert kinds == {part.name.removesuffix(".tex.j2") for part in parts}
 

@@ -6,6 +6,8 @@ from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import replace
 from typing import Any
 
+from flint import acb, ctx
+
 from closedform.derivation.driven.closing_steps import resonance_step
 from closedform.derivation.driven.generator_steps import generator_step
 from closedform.derivation.driven.model_steps import driven_model_step
@@ -35,6 +37,7 @@ from closedform.derivation.parametric.proof.numbers import Given
 from closedform.derivation.parametric.proof.statements import prove_case_statements
 from closedform.derivation.parametric.result_steps import branch_step
 from closedform.derivation.parametric.variables import names_of
+from closedform.derivation.proof.evaluation import ball_at
 from closedform.derivation.result_steps import cautions_step
 from closedform.derivation.step import Derivation, Matrix, Step
 from closedform.notation.expression import operations
@@ -49,6 +52,7 @@ from closedform.verification.record import Check, UnprovedError
 __all__ = ["in_cases"]
 
 POINTS = 2
+_BITS = 256
 LONGEST = 150
 """Operations in the matrices of a transform up to which they are printed at working."""
 LARGE = 5
@@ -261,14 +265,26 @@ def _spots(
     definitions = tuple(defined_in(inner, len(stacked.cases)))
     found = []
     for case, solution in zip(stacked.cases, response.solutions, strict=True):
-        points = case_points(stacked.model.field, case, POINTS, seed=2)
+        count = POINTS if solution.points is None else 3 * POINTS
+        points = case_points(stacked.model.field, case, count, seed=2)
         if not points:
             how = f"no point of case {case.number + 1} was found to put in"
             check = Check("statements of the derivation", "not attempted", how)
             raise UnprovedError(response.model.name, (check,))
         grounds = [Ground(stacked, case, point, definitions) for point in points]
+        grounds = [g for g in grounds if _is_provided(solution, g)][:POINTS]
         found.append((case.number, _maker(solution, grounds)))
     return found
+
+
+def _is_provided(solution: DrivenSolution, ground: Ground) -> bool:
+    """Whether nothing is zero at a point of what the solution divides by, as it is told."""
+    points = solution.points
+    if points is None or not points.provided:
+        return True
+    with ctx.workprec(_BITS):
+        names = ground.afresh().names
+        return not any(acb(ball_at(f, names)).contains(0) for f in points.provided)
 
 
 def _sets(

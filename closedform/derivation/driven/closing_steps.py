@@ -35,6 +35,7 @@ def resonance_step(
             "value": Statement("shared tone", (_value(writing, found),)),
             "multiplicity": found.multiplicity,
             "order": found.order,
+            "power": power_of(writing.t, found.order),
             "raised": found.raised,
             "damped": found.damped,
             "pair": bool(found.tone.frequency),

@@ -173,11 +173,9 @@ def _by_squares(
     split = sum_of(terms)
     relation = sign_statement(field, argument.element, argument.sign).relation
     zero = Statement("sign", (split, rational_formula(field, field.domain.zero)), relation)
-    sentence: Sentence = (
-        [zero] if operations(whole) < 3 else [Statement("identity", (whole, split))]
-    )
-    if sentence == [zero]:
-        return [*sentence, ", as squares are not negative"]
+    if operations(whole) < 3:
+        return [zero, ", as squares are not negative"]
+    sentence: Sentence = [zero if whole == split else Statement("identity", (whole, split))]
     sentence += [zero.relation and f", a sum of parts that {SIGNS[argument.sign]}"]
     if deep and rest is not None:
         sentence += [":", *_part(field, rest, deep=True)]

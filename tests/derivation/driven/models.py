@@ -20,6 +20,7 @@ DIGITS = 6
 
 MODELS: dict[str, dict[str, Any]] = {
     **KINDS,
+    "rates that may meet": {**KINDS["rates that may meet"], "outputs": {"rate": "a*x1"}},
     "frame": {
         "states": ["x1", "x2"],
         "mass": [[2, 0], [0, 1]],
