@@ -15,9 +15,10 @@ How it reads, where people might differ:
 from __future__ import annotations
 
 import re
+from collections.abc import Sequence
 from dataclasses import dataclass
 from difflib import get_close_matches
-from functools import cache
+from functools import cache, lru_cache
 from importlib.resources import files
 
 from lark import Lark, Token, UnexpectedCharacters, UnexpectedToken
@@ -121,16 +122,21 @@ def _parser() -> Lark:
 def _lexed(text: str) -> tuple[list[Token], int | None]:
     """Return the tokens of a text, and where there is a character that begins none."""
     tokens = []
+    reading = _parser().parse_interactive(text)  # its lexer is made once; that of `lex` each time
     try:
-        for token in _parser().lex(text):
+        for token in reading.lexer_thread.lex(reading.parser_state):  # type: ignore[no-untyped-call]
             tokens.append(token)  # noqa: PERF402  those before a bad character are kept
     except UnexpectedCharacters as error:
         return tokens, error.pos_in_stream or 0
     return tokens, None
 
 
-def _parse(text: str, vocabulary: Vocabulary) -> tuple[list[Token], Expression | _Stop]:
-    """Return the tokens read, and the tree or where reading stopped."""
+@lru_cache(maxsize=4096)
+def _parse(text: str, vocabulary: Vocabulary) -> tuple[Sequence[Token], Expression | _Stop]:
+    """Return the tokens read, and the tree or where reading stopped.
+
+    What is read depends on text and vocabulary alone, and checks read many a text again.
+    """
     lexed, stray = _lexed(text)
     tokens: list[Token] = []
     opened: list[Token] = []

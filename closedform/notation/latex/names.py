@@ -12,6 +12,7 @@ the time: ``x1''`` and ``x1_ddot`` are \ddot{x}_{1}, from the fourth time on x_{
 from __future__ import annotations
 
 import re
+from functools import lru_cache
 from typing import NamedTuple
 
 from closedform.notation.latex.box import Box, Style, plain
@@ -105,6 +106,7 @@ class _Parts(NamedTuple):
     order: int
 
 
+@lru_cache(maxsize=4096)
 def _parts(text: str) -> _Parts | None:
     """Return the parts of a name as they are printed; None for other text."""
     match = NAME.fullmatch(text)
@@ -118,6 +120,7 @@ def _parts(text: str) -> _Parts | None:
     return _Parts(base, tuple(indices), order)
 
 
+@lru_cache(maxsize=4096)
 def printed_key(text: str) -> str:
     """Return a key that two names share exactly if they are printed alike.
 
