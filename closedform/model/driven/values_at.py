@@ -49,7 +49,9 @@ class ConstantSum:
         """Add the value of a wave at an instant."""
         passed = at - wave.origin
         zero = self.field.domain.zero
-        weight = wave.amount * passed**wave.power
+        weight = wave.amount
+        if wave.power:  # elements of fields of functions refuse 0**0
+            weight *= passed**wave.power
         growth, angle = wave.rate * passed, wave.frequency * passed
         if wave.kernel == "one":
             self._add(Constant(growth, "one", zero), weight)

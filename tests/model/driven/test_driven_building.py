@@ -16,6 +16,7 @@ from closedform.algebra.surds import SurdSum
 from closedform.errors import InputError
 from closedform.model import DrivenModel, Model, ParametricModel, load, model_from
 from closedform.model.building import system
+from closedform.model.driven.initial_errors import ContradictoryInitialError
 from closedform.model.driven.jet_rows import JetRows
 from closedform.model.driven.model import Jet
 from closedform.model.errors import TooManyStatesError
@@ -264,6 +265,19 @@ def test_values_of_algebraic_unknowns_are_held_against_the_equations() -> None:
         driven(CIRCUIT, initial={"v": 1, "i_1": 2}, inputs={"u": "3*cos(t)"})
     with pytest.raises(InputError, match=r"it follows that i_1 = \(5/2\)\*exp\(-1\) - 1/2"):
         driven(CIRCUIT, initial={"v": 1, "i_1": 2}, start="1")
+
+
+@pytest.mark.parametrize("load", ["3*cos(2*t)", "3*exp(-t) + t*sin(pi*t)", "3 - t^2"])
+def test_values_of_algebraic_unknowns_are_read_with_parameters_too(load: str) -> None:
+    stated = {
+        "equations": ["a*x'' + x' = -x + y", "y = F"],
+        "parameters": {"a": "positive"},
+        "inputs": {"F": load},
+    }
+    right = {"x": 1, "x'": 0, "y": 3}
+    assert driven({**stated, "initial": right}).initial == (1, 0)
+    with pytest.raises(ContradictoryInitialError, match="it follows that y = 3"):
+        driven({**stated, "initial": {**right, "y": 2}})
 
 
 def test_conditions_at_points_take_the_place_of_initial_values() -> None:
