@@ -51,14 +51,29 @@ from __future__ import annotations
 from collections.abc import Callable
 
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
+from closedform.document.letters import (
+    adjugate,
+    applied,
+    bold,
+    derivative,
+    determinant,
+    dotted,
+    exponential,
+    inverse,
+    lettered,
+    raised,
+    resolvent,
+    scalar,
+    step,
+    time_derivative,
+    turn,
+)
 from closedform.document.matrices import ZERO, matrix_box
 from closedform.notation.expression import (
-    Expression,
     Name,
     Negation,
     Number,
     Product,
-    Quotient,
     Sum,
     is_expression,
 )
@@ -72,7 +87,7 @@ from closedform.notation.latex.box import (
     plain,
 )
 from closedform.notation.latex.formula import formula, signed
-from closedform.notation.latex.names import letter_box, name_box, subscripted
+from closedform.notation.latex.names import name_box
 
 __all__ = ["ANY_ROW", "KINDS", "side_box", "symbol_box"]
 
@@ -127,92 +142,11 @@ def symbol_box(symbol: Symbol) -> Box:
     return setter(symbol)
 
 
-def _bold(symbol: Symbol, letter: str, style: Style = Style.DISPLAY) -> Box:
-    return subscripted(_lettering(symbol.letter or letter, style), symbol.indices, style)
-
-
-def _lettering(text: str, style: Style) -> Box:
-    plain_text = text.removesuffix("_hat")
-    box = letter_box(plain_text, style, bold=True)
-    if plain_text == text:
-        return box
-    return Box(rf"\widehat{{{box.latex}}}", box.width, box.height)
-
-
-def _raised(box: Box, exponent: str, width: float) -> Box:
-    return Box(f"{box.latex}^{{{exponent}}}", box.width + width, box.height)
-
-
-def _primed(box: Box, order: int) -> Box:
-    if order > 3:
-        return _raised(box, f"({order})", 1.2)
-    return Box(box.latex + "'" * order, box.width + 0.3 * order, box.height)
-
-
-def _applied(box: Box, argument: Expression | None) -> Box:
-    return box if argument is None else joined(box, bracketed(formula(argument)))
-
-
-def _lettered(letter: str) -> Callable[[Symbol], Box]:
-    def setter(symbol: Symbol) -> Box:
-        return _applied(_bold(symbol, letter), symbol.argument)
-
-    return setter
-
-
-def _scalar(symbol: Symbol) -> Box:
-    box = name_box(symbol.letter, extra=symbol.indices)
-    return _applied(_primed(box, symbol.order), symbol.argument)
-
-
-def _derivative(symbol: Symbol) -> Box:
-    return _applied(_primed(_bold(symbol, "x"), max(symbol.order, 1)), symbol.argument)
-
-
-def _inverse(symbol: Symbol) -> Box:
-    return _raised(_bold(symbol, "P"), "-1", 1.1)
-
-
-def _exponential(letter: str) -> Callable[[Symbol], Box]:
-    def setter(symbol: Symbol) -> Box:
-        argument = symbol.argument or Name("t")
-        raised = formula(argument, Style.SCRIPT)
-        base = _bold(symbol, letter, Style.SCRIPT)
-        if isinstance(argument, Number) and argument.value.denominator == 1 <= argument.value:
-            base, raised = raised, base  # e^(2A)
-        elif isinstance(argument, Sum | Negation | Number | Quotient):
-            raised = bracketed(raised, Style.SCRIPT)
-        return Box(
-            rf"\mathrm{{e}}^{{{base.latex}{raised.latex}}}", 0.48 + base.width + raised.width
-        )
-
-    return setter
-
-
 def _polynomial(symbol: Symbol) -> Box:
     box = name_box(symbol.letter or "p", extra=symbol.indices)
     if symbol.parts:
         return joined(box, bracketed(side_box(symbol.parts[0])))
-    return _applied(box, symbol.argument or Name("lambda"))
-
-
-def _difference(symbol: Symbol, variable: str) -> Box:
-    """Return lambda I - A in brackets."""
-    argument = formula(symbol.argument or Name(variable))
-    head = Box(rf"{argument.latex}\boldsymbol{{I}} - ", argument.width + 0.6 + BINARY)
-    return bracketed(joined(head, _bold(symbol, "A")))
-
-
-def _determinant(symbol: Symbol) -> Box:
-    return joined(plain(r"\det", 1.5), _difference(symbol, "lambda"))
-
-
-def _resolvent(symbol: Symbol) -> Box:
-    return _raised(_difference(symbol, "s"), "-1", 1.1)
-
-
-def _adjugate(symbol: Symbol) -> Box:
-    return joined(plain(r"\operatorname{adj}", 1.6), _difference(symbol, "s"))
+    return applied(box, symbol.argument or Name("lambda"))
 
 
 def _residue_sum(symbol: Symbol) -> Box:
@@ -222,7 +156,7 @@ def _residue_sum(symbol: Symbol) -> Box:
     root = formula(variable)
     exponent = formula(Product((variable, symbol.argument or Name("t"))), Style.SCRIPT)
     value = bracketed(root)
-    above = joined(_bold(symbol, "N"), value)
+    above = joined(bold(symbol, "N"), value)
     latex = (
         rf"\sum_{{p{value.latex} = 0}} \frac{{{above.latex}}}{{p'{value.latex}}}\,"
         rf"\mathrm{{e}}^{{{exponent.latex}}}"
@@ -231,7 +165,7 @@ def _residue_sum(symbol: Symbol) -> Box:
 
 
 def _shifted(symbol: Symbol) -> Box:
-    box = _bold(symbol, "A")
+    box = bold(symbol, "A")
     if symbol.argument is None:
         raise ValueError("a shifted matrix needs the eigenvalue as its argument")
     if symbol.argument != ZERO:
@@ -246,7 +180,7 @@ def _shifted(symbol: Symbol) -> Box:
         box = joined(box, sign, amount, gap, Box(r"\boldsymbol{I}", 0.6))
     if symbol.order > 1:
         box = box if symbol.argument == ZERO else bracketed(box)
-        box = _raised(box, str(symbol.order), 0.5)
+        box = raised(box, str(symbol.order), 0.5)
     return box
 
 
@@ -285,11 +219,6 @@ def _plus_minus(middle: Side, distance: Side) -> Box:
     return joined(side_box(middle), plain(r" \pm ", BINARY), half)
 
 
-def _time_derivative(symbol: Symbol) -> Box:
-    t = formula(symbol.argument or Name("t"))
-    return Box(rf"\frac{{\mathrm{{d}}}}{{\mathrm{{d}}{t.latex}}}", t.width + 0.8, 2)
-
-
 def _sum(symbol: Symbol) -> Box:
     boxes: list[Box] = []
     for i, part in enumerate(symbol.parts):
@@ -303,17 +232,6 @@ def _quotient(symbol: Symbol) -> Box:
     above, below = map(side_box, symbol.parts)
     wide = max(above.width, below.width) + 0.3
     return Box(rf"\frac{{{above.latex}}}{{{below.latex}}}", wide, 2)
-
-
-def _dotted(symbol: Symbol) -> Box:
-    order = max(symbol.order, 1)
-    body = _lettering(symbol.letter or "x", Style.DISPLAY)
-    dots = Box(rf"\{'d' * order}ot{{{body.latex}}}", body.width, body.height)
-    return _applied(subscripted(dots, symbol.indices, Style.DISPLAY), symbol.argument)
-
-
-def _step(symbol: Symbol) -> Box:
-    return _applied(plain(r"\varepsilon", 0.52), symbol.argument)
 
 
 def _blocks(symbol: Symbol) -> Box:
@@ -353,15 +271,6 @@ def _sinusoid(symbol: Symbol) -> Box:
     return joined(*head, plain(r"\cos", 1.2), bracketed(inside))
 
 
-def _turn(symbol: Symbol) -> Box:
-    above, below = map(int, symbol.indices)
-    size = "" if abs(above) == 1 else str(abs(above))
-    sign = "-" if above < 0 else ""
-    if below == 1:
-        return plain("0" if above == 0 else rf"{sign}{size}\uppi", 1.8)
-    return Box(rf"{sign}\frac{{{size}\uppi}}{{{below}}}", 2.0, 2)
-
-
 def _arc(symbol: Symbol) -> Box:
     *turns, ratio = symbol.parts
     value = joined(plain(r"\arctan", 2.9), bracketed(side_box(ratio)))
@@ -394,19 +303,19 @@ def _case_value(box: Box) -> str:
 
 
 KINDS: dict[str, Callable[[Symbol], Box]] = {
-    "matrix": _lettered("A"),
-    "vector": _lettered("x"),
-    "scalar": _scalar,
-    "identity": _lettered("I"),
+    "matrix": lettered("A"),
+    "vector": lettered("x"),
+    "scalar": scalar,
+    "identity": lettered("I"),
     "zero": lambda _: plain(r"\boldsymbol{0}", 0.6),
-    "inverse": _inverse,
-    "derivative": _derivative,
-    "transition": _exponential("A"),
-    "exponential": _exponential("J"),
+    "inverse": inverse,
+    "derivative": derivative,
+    "transition": exponential("A"),
+    "exponential": exponential("J"),
     "characteristic polynomial": _polynomial,
-    "determinant": _determinant,
-    "resolvent": _resolvent,
-    "adjugate": _adjugate,
+    "determinant": determinant,
+    "resolvent": resolvent,
+    "adjugate": adjugate,
     "residue sum": _residue_sum,
     "shifted": _shifted,
     "entry": _entry,
@@ -414,14 +323,14 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "real pair": _real_pair,
     "sum": _sum,
     "quotient": _quotient,
-    "time derivative": _time_derivative,
-    "dotted": _dotted,
-    "step": _step,
+    "time derivative": time_derivative,
+    "dotted": dotted,
+    "step": step,
     "blocks": _blocks,
     "interval": _interval,
     "cases": _cases,
     "sinusoid": _sinusoid,
-    "turn": _turn,
+    "turn": turn,
     "arc": _arc,
     "angle of": _angle_of,
 }
