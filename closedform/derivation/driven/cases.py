@@ -272,7 +272,8 @@ def _spots(
             check = Check("statements of the derivation", "not attempted", how)
             raise UnprovedError(response.model.name, (check,))
         grounds = [Ground(stacked, case, point, definitions) for point in points]
-        grounds = [g for g in grounds if _is_provided(solution, g)][:POINTS]
+        grounds = [g for g in grounds if _is_provided(solution, g)]
+        grounds = ([g for g in grounds if _is_moderate(solution, g)] or grounds)[:POINTS]
         found.append((case.number, _maker(solution, grounds)))
     return found
 
@@ -285,6 +286,16 @@ def _is_provided(solution: DrivenSolution, ground: Ground) -> bool:
     with ctx.workprec(_BITS):
         names = ground.afresh().names
         return not any(acb(ball_at(f, names)).contains(0) for f in points.provided)
+
+
+def _is_moderate(solution: DrivenSolution, ground: Ground) -> bool:
+    """Whether no number in the constants of a solution is extreme at a point."""
+    points = solution.points
+    if points is None:
+        return True
+    with ctx.workprec(_BITS):
+        own = ground.afresh()
+        return points.is_moderate(lambda e: own.element(e).real)
 
 
 def _sets(

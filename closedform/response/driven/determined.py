@@ -7,7 +7,7 @@ from dataclasses import dataclass, replace
 from functools import reduce
 from operator import mul
 
-from flint import ctx
+from flint import arb, ctx
 
 from closedform.algebra.adjoined import Adjoined
 from closedform.algebra.domain import Comparison, ParameterDomain, SignArgument
@@ -62,6 +62,8 @@ __all__ = [
     "written",
 ]
 
+LARGEST = 200
+"""Exponents and angles beyond are extreme: points at which formulas are tried stay below."""
 LONGEST_PUT_IN = 40
 """Constants with up to so many operations are put into the solution."""
 
@@ -112,6 +114,17 @@ class PointConstants:
             )
             for row in columns
         )
+
+    def is_moderate(self, enclose: Callable[[Scalar], arb]) -> bool:
+        """Whether no power or hyperbolic function is extreme, as `enclose` has the parameters."""
+        for n in self.found.numbers.numbers:
+            if n.kind == "exp" and not abs(enclose(n.amount)) < LARGEST:
+                return False
+            if n.kind == "even":
+                size = abs(enclose(n.amount)) * abs(enclose(n.core)).sqrt()
+                if not size < LARGEST:
+                    return False
+        return True
 
     def formula(self, element: Scalar) -> Expression:
         """Return an element of the field with the adjoined numbers as a formula."""
@@ -304,10 +317,13 @@ def sign_of_number(numbers: Adjoined, element: Scalar) -> int:
 
     Raises UnsettledError if balls do not tell it from zero.
     """
+    names = numbers.field.symbols_in(element)
+    used = [n for n in numbers.numbers if n.name in names]
     bits = 64
     while bits <= MOST_BITS:
         with ctx.workprec(bits):
-            ball = numbers.field.enclose_at(element, numbers.balls(numbers.base.enclose))
+            balls = {n.name: n.enclosure(numbers.base.enclose) for n in used}
+            ball = numbers.field.enclose_at(element, balls)
         if ball.is_finite() and not ball.contains(0):
             return 1 if ball > 0 else -1
         bits *= 2

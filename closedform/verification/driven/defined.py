@@ -10,6 +10,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass, field
 
+from closedform.algebra.adjoined import adjoined
 from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
@@ -56,12 +57,30 @@ def defined_checks(response: ParametricResponse, setting: Setting) -> Iterator[C
             )
             yield from divisors_in(read)
 
+    told = [] if points is None else [f for f in points.provided if not _has_call(f)]
+
+    def apart(below: Expression) -> bool:
+        return _has_call(below) or _is_provided(setting, below, told)
+
     def rational() -> Iterator[Expression]:
-        return (below for below in divisors() if not _has_call(below))
+        return (below for below in divisors() if not apart(below))
 
     yield divisor_check("driven formulas defined", response, case, rational)
     if points is not None:
-        yield _called_check(setting, case, (below for below in divisors() if _has_call(below)))
+        yield _called_check(setting, case, (below for below in divisors() if apart(below)))
+
+
+def _is_provided(setting: Setting, below: Expression, told: list[Expression]) -> bool:
+    """Whether a divisor without functions has a factor that is stated not to be zero."""
+    if not told:
+        return False
+    field = ParameterField(parameters=tuple(sorted(setting.names)))
+    try:
+        own, *others = (rational_value(e, field, Place()) for e in (below, *told))
+    except FormulaError:  # the other check says so
+        return False
+    factors = set(_factors(field, own))
+    return any(f in factors for other in others for f in _factors(field, other))
 
 
 def _called_check(setting: Setting, case: Case, divisors: Iterator[Expression]) -> Check:
@@ -81,6 +100,8 @@ def _called_check(setting: Setting, case: Case, divisors: Iterator[Expression]) 
     known = [f for f in factors if domain.sign_of(f).never_zero]
     for factor in factors:
         if factor not in known and factor not in provided:
+            if numbers.is_by_powers(factor, provided):
+                continue
             how = f"it was not decided whether {numbers.told(factor)} may vanish"
             return Check(item, "not attempted", how)
     left = len(factors) - len(known)
@@ -139,6 +160,30 @@ class _Numbers:
                 if signs in ({1}, {-1}):
                     found.append(Comparison(symbol * whole.scalar(min(signs)), ">"))
         return ParameterDomain(whole, tuple(found))
+
+    def is_by_powers(self, factor: Scalar, provided: set[Scalar]) -> bool:
+        """Whether a factor is one that is provided, with cosh and sinh by powers of e."""
+        own = self._by_powers(factor)
+        held = {f for p in provided for f in self._by_powers(p)}
+        return bool(own) and all(f in held for f in own)
+
+    def _by_powers(self, element: Scalar) -> list[Scalar]:
+        """The factors of an element with powers of e in all functions, but for these powers."""
+        whole = self.domain().field
+        arguments = {
+            name: (call.function, rational_value(call.argument, whole, Place()))
+            for call, name in self.names.items()
+            if call.function in ("exp", "cosh", "sinh") and not _has_call(call.argument)
+        }
+        numbers = adjoined(whole, [u for _, u in arguments.values()], [])
+        wide, put = numbers.field, {}
+        for name, (function, u) in arguments.items():
+            up, two = numbers.power(u), wide.scalar(2)
+            forms = {"exp": up, "cosh": (up + 1 / up) / two, "sinh": (up - 1 / up) / two}
+            put[name] = forms[function]
+        value = wide.substituted(numbers.lift(element), put)
+        units = {wide.symbol(n.name) for n in numbers.numbers}
+        return [f for f in _factors(wide, wide.of_polynomial(value.numer)) if f not in units]
 
     def told(self, factor: Scalar) -> str:
         """Return a factor in words, its functions spelled out."""

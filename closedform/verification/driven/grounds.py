@@ -15,7 +15,7 @@ from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.driven.sums import Enclose
 from closedform.verification.parametric.values import NamesAt
 
-__all__ = ["Ground", "grounds_of"]
+__all__ = ["POINTS", "Ground", "grounds_of"]
 
 POINTS = 3
 
@@ -40,10 +40,10 @@ class Ground:
         return lambda element: base.enclose_at(element, known)
 
 
-def grounds_of(response: ParametricResponse, case: Case) -> tuple[Ground, ...]:
+def grounds_of(response: ParametricResponse, case: Case, count: int = POINTS) -> tuple[Ground, ...]:
     """Return points of a case, on its borders too, or else points where its equations hold."""
     field = response.model.field
-    points = case_points(field, case, POINTS) or points_beside(field, case, POINTS)
+    points = case_points(field, case, count) or points_beside(field, case, count)
     return tuple(
         Ground(
             field, f" at {point}" if str(point) else "", NamesAt(response.model, case, point).balls

@@ -7,7 +7,7 @@ from dataclasses import dataclass, replace
 from functools import cached_property
 from itertools import pairwise
 
-from flint import arb
+from flint import arb, ctx
 
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
@@ -20,13 +20,15 @@ from closedform.notation.expression import Expression
 from closedform.response.driven.functions import Summand
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.parametric.response import ParametricResponse
-from closedform.verification.driven.grounds import Ground, grounds_of
+from closedform.verification.driven.grounds import POINTS, Ground, grounds_of
 from closedform.verification.driven.sums import Enclose, TimedSum, wave_sum
 from closedform.verification.eigenvalues import NamedValues
 from closedform.verification.parametric.identities import vanishes_on
 from closedform.verification.residuals import Vanishes, is_zero_element
 
 __all__ = ["Setting", "setting_of"]
+
+_BITS = 256
 
 
 @dataclass(frozen=True)
@@ -298,9 +300,25 @@ def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:
         tuple(term.factor.p for term in branch.exponential.terms),
         lambda element: field.substituted(element, branch.values),
         lambda element: vanishes_on(branch, element),
-        grounds_of(stacked, case),
+        _where_provided(grounds_of(stacked, case, POINTS * (2 if points else 1)), solution),
         names | frozenset({*field.parameters, *(q.name for q in case.quantities)}),
     )
+
+
+def _where_provided(grounds: Sequence[Ground], solution: DrivenSolution) -> tuple[Ground, ...]:
+    """The points at which nothing is zero of what a solution of point conditions divides by."""
+    points = solution.points
+    if points is None:
+        return tuple(grounds)
+    found = []
+    with ctx.workprec(_BITS):
+        for ground in grounds:
+            known = ground.balls()
+            values = [enclose(f, known) for f in points.provided]
+            if not any(value.contains(0) for value in values):
+                found.append(ground)
+        moderate = [ground for ground in found if points.is_moderate(ground.enclose())]
+    return tuple(moderate or found)
 
 
 def _without_repeats(model: DrivenModel) -> DrivenModel:
