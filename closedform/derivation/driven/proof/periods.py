@@ -9,7 +9,8 @@ from flint import acb, acb_mat
 
 from closedform.derivation.driven.periodic_steps import recursion
 from closedform.derivation.driven.proof.motion import row_of
-from closedform.derivation.driven.proof.spot import PeriodSpot, Spot
+from closedform.derivation.driven.proof.period_spot import PeriodSpot, periods_of
+from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.values import column_at, equal
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import Said
@@ -41,7 +42,7 @@ def _own(spot: Spot, said: Said) -> PeriodSpot:
     place = said.step.facts["place"]
     if not isinstance(place, int):
         raise TypeError("an input repeats in one of the ways that the model has")
-    return spot.periods[place]
+    return periods_of(spot)[place]
 
 
 def _periods(own: PeriodSpot) -> list[int]:

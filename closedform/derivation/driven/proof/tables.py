@@ -8,6 +8,7 @@ from typing import Any
 from flint import acb, arb
 
 from closedform.algebra.enclosure import ball_of
+from closedform.derivation.driven.proof.period_spot import total_at
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.stated import condition
 from closedform.derivation.driven.proof.values import NoPieceError, side_at
@@ -48,7 +49,7 @@ def _table(spot: Spot, step: Step, held: Mapping[str, Any]) -> Iterator[Finding]
         exact = exact_at(formula_of(read_formula(text, names=frozenset())), {})
         t = acb(ball_of(exact))
         yield from whether(not bool(t.real < spot.instants[0].real), text, "it is before the start")
-        expected = spot.total_at(t)
+        expected = total_at(spot, t)
         scale = spot.size_at(t)
         for name, value, true in zip(names, values, expected, strict=True):
             yield decimal_of(f"value of {name} at {text}", value, true, digits, scale)
