@@ -270,6 +270,7 @@ def test_values_of_algebraic_unknowns_are_held_against_the_equations() -> None:
 @pytest.mark.parametrize("load", ["3*cos(2*t)", "3*exp(-t) + t*sin(pi*t)", "3 - t^2"])
 def test_values_of_algebraic_unknowns_are_read_with_parameters_too(load: str) -> None:
     stated = {
+        "title": "Oscillator",
         "equations": ["a*x'' + x' = -x + y", "y = F"],
         "parameters": {"a": "positive"},
         "inputs": {"F": load},
