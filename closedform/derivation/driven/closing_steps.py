@@ -90,7 +90,7 @@ def _test_row(writing: Writing, test: HurwitzTest) -> dict[str, object]:
             "statement": Statement(
                 "Hurwitz determinant",
                 (
-                    Symbol("scalar", (str(k),), None, "D"),
+                    Symbol("scalar", (str(k),), None, writing.letter("D")),
                     writing.element(argument.element),
                 ),
             ),
@@ -206,7 +206,7 @@ def _phasor(
     parts: list[Side] = [] if phasor.mean_formula == ZERO else [phasor.mean_formula]
     phases: list[dict[str, Any]] = []
     for k, sinusoid in enumerate(phasor.sinusoids):
-        symbol = _phase_symbol(row, k, len(phasor.sinusoids))
+        symbol = _phase_symbol(writing, row, k, len(phasor.sinusoids))
         argument = _argument(writing, sinusoid)
         parts.append(Symbol("sinusoid", parts=(sinusoid.amplitude, argument, symbol)))
         phases.append(_phase(sinusoid, symbol))
@@ -216,9 +216,9 @@ def _phasor(
     return {"statement": statement, "gains": list(_gains(writing, name, phasor))}, phases
 
 
-def _phase_symbol(row: int, k: int, count: int) -> Symbol:
+def _phase_symbol(writing: Writing, row: int, k: int, count: int) -> Symbol:
     index = str(row + 1) if count == 1 else f"{row + 1},{k + 1}"
-    return Symbol("scalar", (index,), None, "varphi")
+    return Symbol("scalar", (index,), None, writing.letter("varphi"))
 
 
 def _argument(writing: Writing, sinusoid: Sinusoid) -> Expression:

@@ -101,7 +101,8 @@ def _over_a_period(writing: Writing, repeat: Repeat) -> Side:
 
 def _end(writing: Writing, index: str) -> Symbol:
     """The states at the end of a period."""
-    return Symbol("scalar" if writing.is_scalar else "vector", (index,), None, "g")
+    kind = "scalar" if writing.is_scalar else "vector"
+    return Symbol(kind, (index,), None, writing.letter("g"))
 
 
 def _stretch(

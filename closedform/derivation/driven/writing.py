@@ -32,6 +32,14 @@ __all__ = ["A_HAT", "X_HAT", "Writing", "bold", "calls_in", "interval", "unboxed
 
 A_HAT = Symbol("matrix", letter="A_hat")
 X_HAT = Symbol("vector", letter="x_hat")
+LETTERS = {
+    "h": ("h", "j", "r", "eta"),
+    "b": ("b", "d", "p", "beta"),
+    "g": ("g", "f", "r", "gamma"),
+    "D": ("D", "H", "Delta"),
+    "varphi": ("varphi", "psi", "theta"),
+}
+"""Letters of a derivation's own, each with others in case the model has it."""
 
 
 def bold(letter: str, argument: Expression | None = None, *indices: str) -> Symbol:
@@ -116,13 +124,23 @@ class Writing:
         return tuple(_label(given, k, taken) for k, given in enumerate(model.inputs, start=1))
 
     @property
-    def root(self) -> Name:
-        """The variable of characteristic polynomials: lambda, unless the model uses it."""
+    def _bases(self) -> set[str]:
+        """The letters of all names of the model, without indices."""
         model = self.model
         names = {*model.rows, *model.unknowns, model.time, *(i.name for i in model.inputs)}
-        names |= set(getattr(model.field, "parameters", ()))
-        taken = {printed_key(name).split("_")[0] for name in names}
+        names |= {*(label.text for label in self.inputs), *getattr(model.field, "parameters", ())}
+        return {printed_key(name).split("_")[0] for name in names}
+
+    @property
+    def root(self) -> Name:
+        """The variable of characteristic polynomials: lambda, unless the model uses it."""
+        taken = self._bases
         return Name(next(letter for letter in ("lambda", "s", "z", "xi") if letter not in taken))
+
+    def letter(self, letter: str) -> str:
+        """Return a letter, or another in its place that no name of the model begins with."""
+        taken = self._bases
+        return next((free for free in LETTERS[letter] if free not in taken), f"{letter}_d")
 
     @property
     def is_scalar(self) -> bool:
@@ -137,9 +155,10 @@ class Writing:
 
     def jump(self, letter: str, place: int) -> Symbol:
         """Return h_j, or b_j for what impulses add."""
+        own = self.letter(letter)
         if self.is_scalar:
-            return Symbol("scalar", (str(place),), None, letter)
-        return bold(letter, None, str(place))
+            return Symbol("scalar", (str(place),), None, own)
+        return bold(own, None, str(place))
 
     def exponential(self, later: Expression) -> Side:
         """Return e^(A later); with one state its exponential."""

@@ -6,10 +6,12 @@ import pytest
 
 from closedform.derivation.driven.build import derive_driven
 from closedform.derivation.driven.proof.statements import PROVERS
+from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import said_in
 from closedform.derivation.step import Step, Symbol
 from closedform.verification.record import VerificationRecord
 from tests.derivation.driven.models import MODELS, derived, proved, solved
+from tests.verification.driven.made import stated
 
 OWN = {
     "driven_model",
@@ -114,3 +116,16 @@ def test_cases_that_read_alike_are_told_once() -> None:
     steps = derived("mount").steps
     assert len([step for step in steps if step.kind == "particular"]) == 1
     assert len([step for step in steps if step.kind == "driven_solution"]) == 3
+
+
+def test_a_letter_that_the_model_uses_is_no_jump() -> None:
+    mapping = {
+        "equations": ["A*h' = q - K*h"],
+        "parameters": {"A": "positive", "K": "positive", "h_0": "real"},
+        "inputs": {"q": "1"},
+        "initial": {"h": "h_0"},
+    }
+    writing = Writing(stated(mapping))
+    assert writing.jump("h", 0) == Symbol("scalar", ("0",), None, "j")
+    assert writing.jump("b", 1) == Symbol("scalar", ("1",), None, "b")
+    assert Writing(solved("resonance").model).letter("h") == "h"

@@ -118,7 +118,8 @@ def steady_start(spot: Spot, said: Said) -> Iterator[Finding]:
 
 def _states(spot: Spot, said: Said, expected: acb_mat, names: dict[str, Any]) -> Iterator[Finding]:
     symbol, column = said.statement.sides
-    letter = isinstance(symbol, Symbol) and symbol.letter == "g"
+    own_letter = Writing(spot.model).letter("g")
+    letter = isinstance(symbol, Symbol) and symbol.letter == own_letter
     yield from whether(letter, said.statement.says, "it is another vector")
     values = column_at(column, {**spot.names, **names}, {**spot.names, **names})
     for k, value in enumerate(values):
