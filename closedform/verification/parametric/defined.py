@@ -79,12 +79,15 @@ def divisor_check(
             factors |= dict.fromkeys(_factors(field, element))
     except FormulaError as error:  # its text is longer or deeper than what is read
         return Check(item, "not attempted", f"a formula was not read back: {error}")
-    put = _rational_definitions(field, case)
+    solved = [
+        {name: model.field.into(field, value)}
+        for name, value in _solved_equations(model.field, case)
+    ]
+    ways: list[dict[str, Scalar]] = [{}, _rational_definitions(field, case), *solved]
     undecided = [
         d
         for d in factors
-        if not domain.sign_of(d).never_zero
-        and not domain.sign_of(field.substituted(d, put)).never_zero
+        if not any(domain.sign_of(field.substituted(d, put)).never_zero for put in ways)
     ]
     if undecided:
         how = f"it was not decided whether {undecided[0]} may vanish"
@@ -200,21 +203,23 @@ def _rational_definitions(field: ParameterField, case: Case) -> dict[str, Scalar
 
 def _with_equations_put_in(base: ParameterField, case: Case) -> Iterator[Comparison]:
     """The conditions once more, with the equations among them solved for a parameter."""
+    for name, value in _solved_equations(base, case):
+        for condition in case.domain.conditions:
+            put_in = base.substituted(condition.element, {name: value})
+            if condition.relation != "=" or put_in:
+                yield Comparison(put_in, condition.relation)
+
+
+def _solved_equations(base: ParameterField, case: Case) -> Iterator[tuple[str, Scalar]]:
+    """The equations among the conditions, each solved for a parameter in it."""
     for equation in case.domain.conditions:
         if equation.relation != "=":
             continue
         for name in base.parameters:
             value = linear_solution(base, equation.element, name)
-            if (
-                value is None
-                or not case.domain.sign_of(base.derivative(equation.element, name)).never_zero
-            ):
-                continue
-            for condition in case.domain.conditions:
-                if condition != equation:
-                    yield Comparison(
-                        base.substituted(condition.element, {name: value}), condition.relation
-                    )
+            slope = base.derivative(equation.element, name)
+            if value is not None and case.domain.sign_of(slope).never_zero:
+                yield name, value
 
 
 _SIGNS = {"decaying": -1, "real roots": 1}

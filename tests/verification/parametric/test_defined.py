@@ -43,6 +43,7 @@ def test_all_formulas_of_a_right_response_are_defined(kind: str) -> None:
         ("pair", 0, "x0/(4*m*k - c^2)"),
         ("pair", 2, "exp(-t/kappa)"),
         ("pair", 0, "c/(m*delta)"),
+        ("pair", 1, "1/(2*m*k - c^2)"),
         ("rates", 0, "1/(b - a)"),
         ("rates", 0, "p/(a^2 - b^2)"),
         ("exchange", 0, "1/(beta - alpha)^2"),
@@ -61,6 +62,7 @@ def test_what_cannot_vanish_may_be_divided_by(kind: str, number: int, text: str)
     ("kind", "number", "text", "divisor"),
     [
         ("pair", 0, "1/x0", "x0"),
+        ("pair", 1, "1/(4*m*k - c^2)", "4*m*k - c**2"),
         ("pair", 0, "sin(t/(c - k))", "c - k"),
         ("rates", 1, "1/(a - 1)", "a - 1"),
         ("rates", 0, "1/(a - 2*b)", "a - 2*b"),
