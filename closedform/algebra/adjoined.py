@@ -15,8 +15,8 @@ says so.  Rational multiples of pi have algebraic cosines, which are adjoined as
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Sequence
-from dataclasses import dataclass, replace
+from collections.abc import Callable, Iterable
+from dataclasses import dataclass
 from fractions import Fraction
 from functools import cached_property, reduce
 from itertools import combinations
@@ -24,11 +24,11 @@ from math import lcm, prod
 from operator import mul
 from typing import Any, Literal
 
-from flint import acb, arb, fmpz_mat
-from sympy.polys.domains import QQ
-from sympy.polys.polyclasses import DMP
+from flint import acb, arb
 
+from closedform.algebra.angles import angle_of, cosine_polynomial
 from closedform.algebra.field import BaseField, Scalar, rational
+from closedform.algebra.integer_basis import Basis, basis_of, turned_down
 from closedform.algebra.parameter_field import PI, ParameterField
 from closedform.algebra.surds import SurdSum, drawn_out
 
@@ -100,7 +100,7 @@ class _Angles:
     """The angles sqrt(core) · amount of one core: a basis, and the names of C and S."""
 
     core: Scalar
-    basis: _Basis
+    basis: Basis
     names: tuple[tuple[str, str], ...]
 
 
@@ -114,7 +114,7 @@ class Adjoined:
     base: BaseField
     field: ParameterField
     numbers: tuple[AdjoinedNumber, ...]
-    exponents: _Basis
+    exponents: Basis
     exponent_names: tuple[str, ...]
     angles: tuple[_Angles, ...]
     cosine: int
@@ -162,7 +162,7 @@ class Adjoined:
 
     def turn(self, square: Scalar, amount: Scalar) -> Pair:
         """Return C and S of the angle sqrt(square) · amount."""
-        core, root, pi_part, rest = _angle(self.base, square, amount)
+        core, root, pi_part, rest = angle_of(self.base, square, amount)
         held = next(a for a in self.angles if a.core == core)
         lifted = self.lift(core)
         pair: Pair = (self.field.domain.one, self.field.domain.zero)
@@ -217,7 +217,7 @@ class Adjoined:
                 found.append((number.name, 2, self.field.scalar(number.number)))
             if number.kind == "cosine":
                 symbol = self.field.symbol(number.name)
-                polynomial = _cosine_polynomial(number.number)
+                polynomial = cosine_polynomial(number.number)
                 m = len(polynomial) - 1
                 lower = sum(
                     (self.field.scalar(c) * symbol**k for k, c in enumerate(polynomial[:-1])),
@@ -315,19 +315,19 @@ def adjoined(
     numbers: list[AdjoinedNumber] = []
     own = [] if isinstance(field, ParameterField) else list(field.radicands)
     powers = [g for g in exponents if g]
-    of_exponents = _turned(_basis(field, powers), powers)
+    of_exponents = turned_down(basis_of(field, powers), powers)
     exponent_names = tuple(f"@exp{k}" for k in range(1, len(of_exponents.elements) + 1))
     for name, element in zip(exponent_names, of_exponents.elements, strict=True):
         numbers.append(AdjoinedNumber(name, "exp", element))
     by_core: dict[Scalar, list[Scalar]] = {}
     turns: list[Fraction] = []
     for square, amount in angles:
-        core, _, pi_part, rest = _angle(field, square, amount)
+        core, _, pi_part, rest = angle_of(field, square, amount)
         by_core.setdefault(core, []).append(rest)
         turns += [pi_part] if pi_part else []
     held, count = [], 0
     for core, rests in by_core.items():
-        basis = _basis(field, [rest for rest in rests if rest], merged=merged)
+        basis = basis_of(field, [rest for rest in rests if rest], merged=merged)
         names = []
         for element in basis.elements:
             count += 1
@@ -393,204 +393,3 @@ def _cosine_of_pi(field: BaseField, n: int, numbers: Adjoined | Recorder) -> Sca
     if not isinstance(field, ParameterField):
         raise TypeError("only a field with pi has angles in turns")
     return numbers.turn(-field.domain.one, field.symbol(PI) / field.scalar(n))[0]
-
-
-# Bases of modules over the integers
-
-
-@dataclass(frozen=True)
-class _Basis:
-    """A basis of the sums of elements of a field: `rows` are those elements as vectors.
-
-    If not `merged` there is an element, or its opposite, for each that is asked for.
-    """
-
-    field: BaseField
-    below: Any
-    keys: tuple[Any, ...]
-    rows: tuple[tuple[Fraction, ...], ...]
-    elements: tuple[Scalar, ...]
-    merged: bool = True
-
-    def counts(self, element: Scalar) -> tuple[int, ...]:
-        """Return the whole numbers by which the basis adds up to an element."""
-        vector = _vector(self.field, element, self.below)
-        left = [vector.pop(key, Fraction(0)) for key in self.keys]
-        if not self.merged:
-            opposite = tuple(-c for c in left)
-            return tuple(
-                int(row == tuple(left)) - int(any(row) and row == opposite) for row in self.rows
-            )
-        found = []
-        for row in self.rows:
-            pivot = next(k for k, entry in enumerate(row) if entry)
-            count = left[pivot] / row[pivot]
-            if count.denominator != 1:
-                raise ValueError(f"{element} is no sum of the basis")
-            left = [a - count * b for a, b in zip(left, row, strict=True)]
-            found.append(int(count))
-        if any(left) or vector:
-            raise ValueError(f"{element} is no sum of the basis")
-        return tuple(found)
-
-
-def _basis(field: BaseField, elements: Sequence[Scalar], *, merged: bool = True) -> _Basis:
-    """Return a basis of what elements add up to, in Hermite's normal form.
-
-    If not `merged` it is the elements themselves, one of each sign.
-    """
-    below = None
-    if isinstance(field, ParameterField):
-        below = field.domain.one.denom
-        for element in elements:
-            below = below.lcm(element.denom)
-    vectors = [_vector(field, element, below) for element in elements]
-    keys = tuple(sorted({key for vector in vectors for key in vector}, reverse=True))
-    if not vectors:
-        return _Basis(field, below, keys, (), ())
-    if not merged:
-        return _each(field, below, keys, vectors)
-    scale = lcm(*(c.denominator for vector in vectors for c in vector.values()))
-    whole = [[int(v.get(key, Fraction(0)) * scale) for key in keys] for v in vectors]
-    reduced = fmpz_mat(whole).hnf()
-    rows = []
-    for i in range(reduced.nrows()):
-        entries = [Fraction(int(reduced[i, k]), scale) for k in range(reduced.ncols())]
-        if any(entries):
-            rows.append(tuple(entries))
-    elements_of = tuple(_element(field, keys, r, below) for r in rows)
-    return _Basis(field, below, keys, tuple(rows), elements_of)
-
-
-def _turned(basis: _Basis, elements: Sequence[Scalar]) -> _Basis:
-    """The basis with opposites of those that occur with a minus alone: e^(-T), not 1/e^T."""
-    counts = [basis.counts(element) for element in elements]
-    signs = [-1 if all(c[k] <= 0 for c in counts) else 1 for k in range(len(basis.rows))]
-    return replace(
-        basis,
-        rows=tuple(
-            tuple(sign * c for c in row) for sign, row in zip(signs, basis.rows, strict=True)
-        ),
-        elements=tuple(
-            element * basis.field.domain.convert(sign)
-            for sign, element in zip(signs, basis.elements, strict=True)
-        ),
-    )
-
-
-def _each(
-    field: BaseField, below: Any, keys: tuple[Any, ...], vectors: Sequence[dict[Any, Fraction]]
-) -> _Basis:
-    rows: list[tuple[Fraction, ...]] = []
-    for vector in vectors:
-        row = tuple(vector.get(key, Fraction(0)) for key in keys)
-        if next(c for c in row if c) < 0:
-            row = tuple(-c for c in row)
-        if row not in rows:
-            rows.append(row)
-    elements = tuple(_element(field, keys, row, below) for row in rows)
-    return _Basis(field, below, keys, tuple(rows), elements, merged=False)
-
-
-def _vector(field: BaseField, element: Scalar, below: Any) -> dict[Any, Fraction]:
-    """An element by its rational coordinates, over the denominator `below`."""
-    if not isinstance(field, ParameterField):
-        return dict(field.surds(element).terms)
-    numerator = element.numer * below.exquo(element.denom)
-    return {monomial: rational(c) for monomial, c in numerator.iterterms()}
-
-
-def _element(field: BaseField, keys: Sequence[Any], row: Sequence[Fraction], below: Any) -> Scalar:
-    if not isinstance(field, ParameterField):
-        return field.scalar(SurdSum.of(dict(zip(keys, row, strict=True))))
-    terms = {k: QQ(c.numerator, c.denominator) for k, c in zip(keys, row, strict=True) if c}
-    above = below.ring.from_dict(terms)
-    return field.of_polynomial(above) / field.of_polynomial(below)
-
-
-# Angles
-
-
-def _angle(
-    field: BaseField, square: Scalar, amount: Scalar
-) -> tuple[Scalar, Scalar, Fraction, Scalar]:
-    """(core, root, r, rest): square = core · root^2, and root · amount = r pi + rest.
-
-    A multiple of pi is taken apart where the core is -1: of cosines and sines.
-    """
-    core, root = _core(field, square)
-    whole = root * amount
-    if core == field.domain.convert(-1) and isinstance(field, ParameterField):
-        part = _of_pi(field, whole)
-        return core, root, part, whole - field.scalar(part) * _pi(field)
-    return core, root, Fraction(0), whole
-
-
-def _pi(field: ParameterField) -> Scalar:
-    return field.symbol(PI) if PI in field.parameters else field.domain.zero
-
-
-def _of_pi(field: ParameterField, element: Scalar) -> Fraction:
-    """The rational number of times that pi by itself is a term of an element."""
-    if PI not in field.parameters or not element.denom.is_ground:
-        return Fraction(0)
-    place = field.parameters.index(PI)
-    monomial = tuple(int(k == place) for k in range(len(field.parameters)))
-    found = element.numer.get(monomial)
-    return Fraction(0) if found is None else rational(found) / rational(element.denom.LC)
-
-
-def _core(field: BaseField, square: Scalar) -> Pair:
-    """The core and the root of square = core · root^2, square factors drawn out."""
-    if isinstance(field, ParameterField):
-        parts = field.factored(square)
-        whole, free = _rational_core(parts.content)
-        core, root = field.scalar(free), field.scalar(whole)
-        for factor, exponent in parts.factors:
-            held = field.of_polynomial(factor)
-            core *= held ** (exponent % 2)
-            root *= held ** (exponent // 2)
-        return core, root
-    value = field.surds(square)
-    if not value.is_rational:
-        return square, field.domain.one
-    whole, free = _rational_core(value.as_fraction())
-    sign = -1 if free < 0 else 1
-    try:
-        inside = field.scalar(SurdSum.of({abs(free): Fraction(1)}))
-    except KeyError:
-        return field.scalar(free), field.scalar(whole)
-    return field.scalar(sign), field.scalar(whole) * inside
-
-
-def _rational_core(value: Fraction) -> tuple[Fraction, int]:
-    """(root, core) with value = core · root^2."""
-    sign = -1 if value < 0 else 1
-    whole, free = drawn_out(abs(value.numerator) * value.denominator)
-    return Fraction(whole, value.denominator), sign * free
-
-
-def _cosine_polynomial(n: int) -> list[Fraction]:
-    """The monic polynomial over Q, lowest power first, whose root of least degree is cos(pi/n).
-
-    It divides T_n(x) + 1, T_n the polynomial of Chebyshev.
-    """
-    one, two = [Fraction(1)], [Fraction(0), Fraction(1)]
-    for _ in range(n - 1):
-        longer = [Fraction(0), *(2 * c for c in two)]
-        for k, c in enumerate(one):
-            longer[k] -= c
-        one, two = two, longer
-    two[0] += 1
-    coefficients = [QQ(c.numerator, c.denominator) for c in reversed(two)]
-    _, factors = DMP(coefficients, QQ, 0).factor_list()
-    found = [[rational(c) for c in reversed(p.monic().to_list())] for p, _ in factors]
-    return next(p for p in found if _has_cosine(p, n))
-
-
-def _has_cosine(polynomial: Sequence[Fraction], n: int) -> bool:
-    """Whether cos(pi/n) is a root: of the factors, which share none, only one comes near 0."""
-    value = arb(0)
-    for c in reversed(polynomial):
-        value = value * (arb.pi() / n).cos() + arb(c.numerator) / c.denominator
-    return bool(value.contains(0))

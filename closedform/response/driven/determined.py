@@ -47,10 +47,8 @@ from closedform.response.driven.boundary_errors import (
 from closedform.response.driven.composition import element_formula, scaled
 from closedform.response.driven.functions import DrivenFunctions
 from closedform.response.driven.point_values import HighFactorError
-from closedform.response.driven.point_writing import (
-    PointWriter,
-    multiplied,
-)
+from closedform.response.driven.point_writing import PointWriter
+from closedform.response.driven.products import multiplied
 from closedform.response.parametric.case import Case
 
 __all__ = [
