@@ -27,6 +27,11 @@ from closedform.errors import Place
 from closedform.model.driven.instants import order_in
 from closedform.model.driven.model import DrivenModel, PointCondition
 from closedform.response.driven.assembly import ParticularMotion, Started
+from closedform.response.driven.point_equations import (
+    determinant,
+    eliminated,
+    solved_by_cramer,
+)
 from closedform.response.driven.point_values import constant_value, value_at_instant
 
 __all__ = ["Block", "InBranch", "PointSolution", "SingularConditionsError", "point_solution"]
@@ -196,7 +201,11 @@ class _Conditions:
         numbers = found.numbers
         values = [self.field.domain.zero] * self.n
         for block in found.blocks:
-            for k, value in zip(block.constants, _cramer(numbers, block), strict=True):
+            for k, value in zip(
+                block.constants,
+                solved_by_cramer(numbers, block.matrix, block.right, block.determinant),
+                strict=True,
+            ):
                 values[k] = value
         states = self._particular_states(numbers)
         for (origin, column), value in zip(found.basis, values, strict=True):
@@ -323,7 +332,7 @@ class _Conditions:
             tuple(constants),
             rows,
             tuple(numbers.normal(right[i]) for i in conditions),
-            _determinant(numbers, rows),
+            determinant(numbers, rows),
         )
 
     def _vanishes(self, numbers: Adjoined, element: Scalar) -> bool:
@@ -336,80 +345,17 @@ class _Conditions:
         self._entries(recorder, basis)
         numbers = adjoined(self.field, recorder.exponents, recorder.angles)
         matrix, right = self._entries(numbers, basis)
-        one, zero = numbers.field.domain.one, numbers.field.domain.zero
-        n = self.n
-        rows = [
-            [*row, *(one if i == k else zero for k in range(n)), right[i]]
-            for i, row in enumerate(matrix)
-        ]
-        pivots: list[int] = []
-        for column in range(n):
-            rank = len(pivots)
-            place = next(
-                (i for i in range(rank, n) if not self._vanishes(numbers, rows[i][column])), None
-            )
-            if place is None:
-                continue
-            rows[rank], rows[place] = rows[place], rows[rank]
-            pivot = rows[rank][column]
-            rows[rank] = [numbers.normal(e / pivot) for e in rows[rank]]
-            for i in range(n):
-                factor = rows[i][column]
-                if i != rank and factor:
-                    rows[i] = [
-                        numbers.normal(a - factor * b)
-                        for a, b in zip(rows[i], rows[rank], strict=True)
-                    ]
-            pivots.append(column)
-        free = n - len(pivots)
-        for row in rows[len(pivots) :]:
-            if not self._vanishes(numbers, row[-1]):
-                raise SingularConditionsError(numbers, free, tuple(row[n : 2 * n]), row[-1])
-        column = next(k for k in range(n) if k not in pivots)
-        motion = [zero] * n
-        motion[column] = one
-        for row, pivot_column in zip(rows, pivots, strict=False):
-            motion[pivot_column] = -row[column]
-        lowered = [numbers.lowered(x) for x in motion]
-        if any(x is None for x in lowered):
-            raise SingularConditionsError(numbers, free)
-        raise SingularConditionsError(
-            numbers, free, motion=(basis[0][0], self.field.matrix([[x] for x in lowered]))
-        )
+        left = eliminated(numbers, matrix, right, lambda e: self._vanishes(numbers, e))
+        if left.contradiction is not None:
+            raise SingularConditionsError(numbers, left.free, *left.contradiction)
+        lowered = [numbers.lowered(x) for x in left.motion or ()]
+        if not lowered or any(x is None for x in lowered):
+            raise SingularConditionsError(numbers, left.free)
+        column = self.field.matrix([[x] for x in lowered])
+        raise SingularConditionsError(numbers, left.free, motion=(basis[0][0], column))
 
 
 def _kernel(field: BaseField, matrix: FieldMatrix) -> list[FieldMatrix]:
     """Columns that span what a matrix takes to zero."""
     found = matrix.to_sparse().nullspace().to_dense().to_list() if matrix.shape[1] else []
     return [field.matrix([[e] for e in row]) for row in found]
-
-
-def _determinant(numbers: Adjoined, rows: Sequence[Sequence[Scalar]]) -> Scalar:
-    """The determinant by minors of the first rows, each worked out once; nothing is divided."""
-    one, zero = numbers.field.domain.one, numbers.field.domain.zero
-    minors: dict[tuple[int, ...], Scalar] = {(): one}
-    for row in rows:
-        longer: dict[tuple[int, ...], Scalar] = {}
-        for columns, minor in minors.items():
-            if not minor:
-                continue
-            for k, entry in enumerate(row):
-                if k in columns or not entry:
-                    continue
-                sign = (-1) ** sum(c > k for c in columns)
-                key = tuple(sorted((*columns, k)))
-                longer[key] = longer.get(key, zero) + sign * minor * entry
-        minors = {key: numbers.normal(value) for key, value in longer.items()}
-    return minors.get(tuple(range(len(rows))), zero)
-
-
-def _cramer(numbers: Adjoined, block: Block) -> list[Scalar]:
-    """The constants of a block: in place of a column the right sides, over the determinant."""
-    found = []
-    for k in range(len(block.constants)):
-        rows = [
-            (*row[:k], value, *row[k + 1 :])
-            for row, value in zip(block.matrix, block.right, strict=True)
-        ]
-        found.append(numbers.normal(_determinant(numbers, rows) / block.determinant))
-    return found
