@@ -7,6 +7,7 @@ from pathlib import Path
 import pytest
 
 import closedform
+from closedform.model.driven.model import DrivenModel
 
 STARTERS = sorted((Path(__file__).parents[1] / "templates" / "starters").glob("*.toml"))
 
@@ -16,7 +17,7 @@ def test_a_starter_is_read_and_its_response_proved(path: Path) -> None:
     model = closedform.load(path)
     assert model.name == path.stem
     assert model.title
-    assert model.summary
+    assert (model.stacked if isinstance(model, DrivenModel) else model).summary
     assert model.times
     record = closedform.verify(closedform.respond(model))
     assert record.holds
@@ -37,3 +38,22 @@ def test_a_starter_shows_the_kind_of_spectrum_it_is_there_for(name: str) -> None
     path = next(path for path in STARTERS if path.stem == name)
     factors = closedform.respond(closedform.load(path)).spectrum.factors
     assert sorted((f.degree, tuple(f.blocks)) for f in factors) == KINDS[name]
+
+
+DRIVEN = {
+    "driven_damped_oscillator": ("equations", 3, ["stable"] * 3),
+    "fin_between_plates": ("equations", 1, ["not stable"]),
+    "matrices_with_damping": ("second order", 1, ["stable"]),
+    "oral_dose_every_eight_hours": ("equations", 2, ["stable"] * 2),
+    "sine_at_resonance": ("equations", 2, ["not stable"] * 2),
+    "switched_ladder": ("equations", 1, ["stable"]),
+}
+
+
+@pytest.mark.parametrize("name", DRIVEN)
+def test_a_driven_starter_shows_what_it_is_there_for(name: str) -> None:
+    model = closedform.load(next(path for path in STARTERS if path.stem == name))
+    assert isinstance(model, DrivenModel)
+    solutions = closedform.respond(model).solutions
+    verdicts = [solution.stability.verdict for solution in solutions]
+    assert (model.form, len(solutions), verdicts) == DRIVEN[name]

@@ -19,7 +19,7 @@ from tests.parametric.table_reader import check_table
 STARTERS = {
     path.stem: path
     for path in sorted((Path(__file__).parents[2] / "templates" / "starters").glob("*.toml"))
-    if "parameters" in tomllib.loads(path.read_text(encoding="utf-8"))
+    if {"parameters", "matrix"} <= set(tomllib.loads(path.read_text(encoding="utf-8")))
 }
 
 
