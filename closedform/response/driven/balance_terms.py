@@ -12,9 +12,8 @@ from closedform.notation.expression import Expression, names_in
 from closedform.response.driven.composition import interval_formula
 from closedform.response.driven.functions import Interval
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
-from closedform.response.parametric.case import Case, Sought
 from closedform.response.parametric.response import ParametricResponse
-from closedform.response.parametric.writing import written_case
+from closedform.response.parametric.writing import formulas_beside
 
 __all__ = ["BalanceTerm", "balance_terms", "derived"]
 
@@ -107,7 +106,7 @@ def _written(
     if isinstance(stacked, ParametricResponse):
         if solution.case is None:
             return None
-        return _in_case(stacked, solution.case, function)
+        return formulas_beside(stacked.model, solution.case, function)
     forms = replace(stacked, further=function, parted=None).closed_forms
     known = {constant.name: constant for constant in stacked.closed_forms.constants}
     if any(known.get(c.name, c) != c for c in forms.constants):
@@ -116,19 +115,3 @@ def _written(
     if not used <= {stacked.model.time, *known}:
         return None
     return forms.further
-
-
-def _in_case(
-    stacked: ParametricResponse, case: Case, function: ExponentialMatrix
-) -> tuple[tuple[Expression, ...], ...] | None:
-    sought = Sought(case.state, case.output, function, None)
-    made = written_case(stacked.model, case.branch, case.regimes, sought, case.number, case)
-    if made is None:
-        return None
-    known = {quantity.name: quantity for quantity in case.quantities}
-    if any(known.get(q.name, q) != q for q in made.quantities):
-        return None
-    used = {n for row in made.further_formulas for formula in row for n in names_in(formula)}
-    if not used <= {stacked.model.time, *stacked.model.field.parameters, *known}:
-        return None
-    return made.further_formulas

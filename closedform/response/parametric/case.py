@@ -59,7 +59,8 @@ class Case:
     the equations of the branch put in.  `abbreviated` tells which abbreviations stand for
     which parameters, and to what extent.  `further` are other functions with the same
     exponentials that were asked for, `further_formulas` their entries; `parted` are
-    some that `by_mode` takes apart.
+    some that `by_mode` takes apart.  `left_out` is the parameter that the equation of a double
+    root takes out of the formulas, if one does.
     """
 
     number: int
@@ -80,6 +81,7 @@ class Case:
     further_formulas: Rows = ()
     parted: ExponentialMatrix | None = None
     by_mode: ByMode = ()
+    left_out: str | None = None
 
     @property
     def condition(self) -> str:

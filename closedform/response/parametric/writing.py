@@ -7,50 +7,30 @@ from dataclasses import dataclass, replace
 from typing import TypeVar
 
 from closedform.algebra.branches import Branch
-from closedform.algebra.domain import Comparison, ParameterDomain
-from closedform.algebra.equations import linear_solution
+from closedform.algebra.domain import ParameterDomain
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.regimes import Regime
 from closedform.model.parametric import ParametricModel
-from closedform.notation.expression import operations
+from closedform.notation.expression import Expression, names_in, operations
 from closedform.notation.shown import FormulaColumn, FormulaMatrix
-from closedform.response.parametric.case import Case, Sought, WrittenQuantity
+from closedform.response.parametric.case import Case, Sought
 from closedform.response.parametric.closed_form import closed_form, fronted_matrix
-from closedform.response.parametric.definitions import definition_formula
+from closedform.response.parametric.lettering import Lettering, lettering
 from closedform.response.parametric.mode_parts import by_mode
 from closedform.response.parametric.mode_terms import terms_of
-from closedform.response.parametric.modes import Mode, modes_of, quantities_of
-from closedform.response.parametric.quantities import (
-    Definition,
-    Letters,
-    Quantity,
-    ResidueDefinition,
-    RootDefinition,
-    SquareRoot,
-    SumOfRoots,
-    Value,
-)
-from closedform.response.parametric.residues import with_residues
+from closedform.response.parametric.modes import Mode
 from closedform.response.parametric.rewriting import (
     Extent,
     Rewriting,
-    rewriting_for,
     rewritten,
     shortest,
 )
 from closedform.response.parametric.selection import case_conditions
-from closedform.response.parametric.shortenings import (
-    Shortening,
-    rewritings_by_root,
-    sound_rewritings,
-    trade_shortenings,
-    user_shortenings,
-)
 from closedform.response.parametric.terms import Term
 
-__all__ = ["written_case"]
+__all__ = ["formulas_beside", "written_case"]
 
 T = TypeVar("T")
 Table = tuple[tuple[T, ...], ...]
@@ -85,55 +65,38 @@ def written_case(
     if selected is None:
         return None
     conditions, domain = selected
-    letters = Letters(_taken(model))
-    modes = modes_of(field, branch.spectrum.factors, regimes, letters)
     sought = (functions.state, functions.output, functions.further, functions.parted)
-    modes = with_residues(field, modes, sought, letters)
-    shortenings = (*user_shortenings(model, branch), *trade_shortenings(domain, modes, letters))
-    writing = _writing_field(model, modes, shortenings)
-    quantities = [q for mode in modes for q in quantities_of(field, writing, mode)]
-    lifted = _lifted(field, writing, domain, quantities, shortenings)
-    terms = _functions(field, writing, modes, branch.exponential, sought)
-    below = _names_below(writing, terms)
-    rewritings = sound_rewritings(
-        lifted,
-        (
-            r
-            for s in shortenings
-            for r in rewriting_for(writing, s.name, field.into(writing, s.value), s.power)
-        ),
-        below,
-    )
+    letters = lettering(model, branch, regimes, domain, sought)
+    writing, quantities = letters.writing, letters.quantities
+    terms = _functions(field, writing, letters.modes, branch.exponential, sought)
+    below = _names_below(writing, (*terms.results, *terms.entries))
+    rewritings = letters.rewritings(field, below)
     if like is None:
-        own = (r for q in quantities for r in rewritings_by_root(field, writing, q))
-        costs = {s.name: operations(s.formula(field)) for s in shortenings}
+        costs = {s.name: operations(s.formula(field)) for s in letters.shortenings}
         costs |= dict.fromkeys((q.name for q in quantities), 0)
-        candidates = [*rewritings, *sound_rewritings(lifted, own, below)]
+        candidates = [*rewritings, *letters.rewritings_by_root(field, below)]
         used = shortest(writing, terms.results, candidates, costs, model.time).used
     else:
         known = {(name, parameter): extent for name, parameter, extent in like.abbreviated}
         used = tuple(
             (r, known[r.name, r.parameter]) for r in rewritings if (r.name, r.parameter) in known
         )
-    results, entries = _shortest_under_equations(writing, domain, modes, terms, used, model.time)
+    put, results = _shortest_under_equations(letters, domain, terms.results, used, model.time)
+    entries = rewritten(writing, _put_in(writing, terms.entries, put), used)
     written_whole = len(results) - _entries(functions.parted)
     formulas = [closed_form(writing, f, model.time) for f in results[:written_whole]]
     rows = [entries[i * n : (i + 1) * n] for i in range(n)]
     transition = tuple(
         tuple(closed_form(writing, function, model.time) for function in row) for row in rows
     )
-    put = [r for r, _ in used if r in rewritings]
-    abbreviations = [s for s in shortenings if s.name in {r.name for r in put}]
-    written = [WrittenQuantity(s.name, s.formula(field), None, s.origin) for s in abbreviations]
-    written += [_written_quantity(lifted, q, put) for q in quantities]
     return Case(
         number,
         branch,
         regimes,
         conditions,
         domain,
-        modes,
-        tuple(written),
+        letters.modes,
+        letters.written(field, [r for r, _ in used if r in rewritings]),
         functions.state,
         functions.output,
         FormulaColumn(formulas[:n]),
@@ -145,7 +108,43 @@ def written_case(
         _in_rows(formulas[n + m : written_whole], functions.further),
         functions.parted,
         _in_rows([by_mode(writing, f) for f in results[written_whole:]], functions.parted),
+        next(iter(put), None),
     )
+
+
+def formulas_beside(
+    model: ParametricModel, case: Case, function: ExponentialMatrix
+) -> Table[Expression] | None:
+    """Return the formulas of another function, written as those of a case are.
+
+    None if they need names that the case does not have.
+    """
+    field, domain = model.field, case.domain
+    sought = (case.state, case.output, function, None)
+    letters = lettering(model, case.branch, case.regimes, domain, sought)
+    writing = letters.writing
+    terms = _terms_of(field, writing, letters.modes, function)
+    below = _names_below(writing, terms)
+    own = letters.rewritings(field, below)
+    known = {(r.name, r.parameter): r for r in (*own, *letters.rewritings_by_root(field, below))}
+    used = [
+        (known[name, parameter], extent)
+        for name, parameter, extent in case.abbreviated
+        if (name, parameter) in known
+    ]
+    meant = {quantity.name: quantity for quantity in case.quantities}
+    written = letters.written(field, [r for r, _ in used if r in own])
+    if any(meant.get(quantity.name, quantity) != quantity for quantity in written):
+        return None
+    put = letters.left_out(field, domain, case.left_out)
+    formulas = [
+        closed_form(writing, f, model.time)
+        for f in rewritten(writing, _put_in(writing, terms, put), used)
+    ]
+    names = frozenset().union(*map(names_in, formulas))
+    if not names <= {model.time, *field.parameters, *meant}:
+        return None
+    return _in_rows(formulas, function)
 
 
 def _in_rows(entries: Sequence[T], function: ExponentialMatrix | None) -> Table[T]:
@@ -159,22 +158,6 @@ def _entries(function: ExponentialMatrix | None) -> int:
     return 0 if function is None else int(function.shape[0] * function.shape[1])
 
 
-def _writing_field(
-    model: ParametricModel, modes: Sequence[Mode], shortenings: Sequence[Shortening]
-) -> ParameterField:
-    """The parameters of A, then the names, then other parameters: the order of printing."""
-    field = model.field
-    entries = {n for row in model.matrix for e in row for n in field.names_in(e)}
-    return ParameterField(
-        parameters=(
-            *(n for n in field.parameters if n in entries),
-            *(name for mode in modes for name in mode.written_names),
-            *(s.name for s in shortenings),
-            *(n for n in field.parameters if n not in entries),
-        )
-    )
-
-
 def _functions(
     field: ParameterField,
     writing: ParameterField,
@@ -182,25 +165,35 @@ def _functions(
     exponential: ExponentialMatrix,
     functions: Sequence[ExponentialMatrix | None],
 ) -> _Functions:
-    def terms(function: ExponentialMatrix | None) -> tuple[tuple[Term, ...], ...]:
-        if function is None:
-            return ()
-        rows, columns = function.shape
-        return tuple(
-            tuple(terms_of(field, writing, modes, function, i, k))
-            for i in range(rows)
-            for k in range(columns)
-        )
-
-    results = tuple(part for function in functions for part in terms(function))
-    return _Functions(results, terms(exponential))
+    results = tuple(
+        part
+        for function in functions
+        if function is not None
+        for part in _terms_of(field, writing, modes, function)
+    )
+    return _Functions(results, _terms_of(field, writing, modes, exponential))
 
 
-def _names_below(writing: ParameterField, terms: _Functions) -> frozenset[str]:
+def _terms_of(
+    field: ParameterField,
+    writing: ParameterField,
+    modes: Sequence[Mode],
+    function: ExponentialMatrix,
+) -> Rows:
+    """The terms of every entry, row by row."""
+    rows, columns = function.shape
+    return tuple(
+        tuple(terms_of(field, writing, modes, function, i, k))
+        for i in range(rows)
+        for k in range(columns)
+    )
+
+
+def _names_below(writing: ParameterField, terms: Rows) -> frozenset[str]:
     """The parameters in the denominators of amounts and rates."""
     denominators = {
         element.denom
-        for function in (*terms.results, *terms.entries)
+        for function in terms
         for term in function
         for element in (term.amount, term.rate)
         if element
@@ -210,40 +203,24 @@ def _names_below(writing: ParameterField, terms: _Functions) -> frozenset[str]:
 
 
 def _shortest_under_equations(
-    writing: ParameterField,
+    letters: Lettering,
     domain: ParameterDomain,
-    modes: Sequence[Mode],
-    terms: _Functions,
+    functions: Rows,
     used: Sequence[tuple[Rewriting, Extent]],
     time: str,
-) -> tuple[Rows, Rows]:
-    """Results and entries with the abbreviations that are used.
+) -> tuple[dict[str, Scalar], Rows]:
+    """What is put in the place of a parameter, and the functions with all that is used.
 
     For a double root the equation D = 0 may leave out a parameter, if that is shorter.
     """
-    field = domain.field
-    puts: list[dict[str, Scalar]] = [{}]
-    if any(mode.regime.kind == "double" for mode in modes):
-        for condition in domain.conditions:
-            if condition.relation == "=":
-                puts += [
-                    {name: field.into(writing, solved)}
-                    for name in field.parameters
-                    if (solved := linear_solution(field, condition.element, name)) is not None
-                    and domain.sign_of(_slope(field, condition.element, name)).never_zero
-                ]
-    forms = []
-    for put in puts:
-        results = rewritten(writing, _put_in(writing, terms.results, put), used)
-        length = sum(operations(closed_form(writing, f, time)) for f in results)
-        forms.append((length, put, results))
-    _, put, results = min(forms, key=lambda form: form[0])
-    return results, rewritten(writing, _put_in(writing, terms.entries, put), used)
-
-
-def _slope(field: ParameterField, element: Scalar, name: str) -> Scalar:
-    """What a parameter is multiplied by where the element is zero."""
-    return field.derivative(field.of_polynomial(element.numer), name)
+    writing, nothing = letters.writing, dict[str, Scalar]()
+    puts = [nothing, *letters.equations(domain.field, domain)]
+    forms = [rewritten(writing, _put_in(writing, functions, put), used) for put in puts]
+    if len(forms) == 1:
+        return nothing, forms[0]
+    lengths = [sum(operations(closed_form(writing, f, time)) for f in form) for form in forms]
+    best = lengths.index(min(lengths))
+    return puts[best], forms[best]
 
 
 def _put_in(writing: ParameterField, functions: Rows, put: dict[str, Scalar]) -> Rows:
@@ -260,68 +237,3 @@ def _put_in(writing: ParameterField, functions: Rows, put: dict[str, Scalar]) ->
         )
         for function in functions
     )
-
-
-def _taken(model: ParametricModel) -> set[str]:
-    """Every name of the model: nothing else is given one that prints like it."""
-    return {
-        *model.states,
-        model.time,
-        *(output.name for output in model.outputs),
-        *(parameter.name for parameter in model.parameters),
-        *(definition.name for definition in (*model.abbreviations, *model.restated)),
-    }
-
-
-def _lifted(
-    field: ParameterField,
-    writing: ParameterField,
-    domain: ParameterDomain,
-    quantities: Sequence[Quantity],
-    shortenings: Sequence[Shortening],
-) -> ParameterDomain:
-    """The domain over the writing field, with the names that are known to be positive."""
-    conditions = [Comparison(field.into(writing, c.element), c.relation) for c in domain.conditions]
-    conditions += [Comparison(writing.symbol(q.name), ">") for q in quantities if q.positive]
-    for shortening in shortenings:
-        symbol, sign = writing.symbol(shortening.name), domain.sign_of(shortening.value).sign
-        if sign == "positive":
-            conditions.append(Comparison(symbol, ">"))
-        elif sign in ("negative", "nonzero"):
-            conditions.append(Comparison(symbol, "!="))
-    return ParameterDomain(writing, tuple(conditions))
-
-
-def _written_quantity(
-    domain: ParameterDomain, quantity: Quantity, chosen: Sequence[Rewriting]
-) -> WrittenQuantity:
-    """Return a quantity with its definition in the shortest form that the abbreviations allow."""
-    if isinstance(quantity.definition, RootDefinition | ResidueDefinition):
-        return WrittenQuantity(quantity.name, None, quantity.definition, "roots")
-    forms = [definition_formula(domain, quantity.definition)]
-    forms += [
-        definition_formula(domain, _rewritten(domain.field, quantity.definition, put))
-        for put in (*([r] for r in chosen), chosen)
-        if put
-    ]
-    formula = min((f for f in forms if f is not None), key=operations)
-    return WrittenQuantity(quantity.name, formula, None, "roots")
-
-
-def _rewritten(
-    field: ParameterField, definition: Definition, rewritings: Sequence[Rewriting]
-) -> Definition:
-    def put(element: Scalar) -> Scalar:
-        for r in rewritings:
-            element = field.substituted(element, {r.parameter: r.replacement})
-        return element
-
-    match definition:
-        case Value(value):
-            return Value(put(value))
-        case SquareRoot(square):
-            return SquareRoot(put(square))
-        case SumOfRoots(total, last, sign, rooted):
-            return SumOfRoots(put(total), put(last), sign, rooted)
-        case _:
-            return definition
