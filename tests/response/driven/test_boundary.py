@@ -14,6 +14,7 @@ from hypothesis import strategies as st
 
 from closedform.model.building import model_from
 from closedform.model.driven.model import DrivenModel
+from closedform.model.driven.signal_errors import UnknownOrderError
 from closedform.notation.plain import plain
 from closedform.response.driven.boundary_errors import (
     ConditionCountError,
@@ -104,16 +105,42 @@ def test_every_regime_of_a_damped_motion_has_its_form() -> None:
 
 
 def test_a_convective_tip_needs_no_proviso() -> None:
-    (points,) = points_of(
-        solved(
-            equations=["T'' = m^2*T"],
-            time="z",
-            parameters=named("m", "L", "k", "h", "T_b"),
-            at_points=["T(0) = T_b", "k*T'(L) + h*T(L) = 0"],
-        )
+    response = solved(
+        equations=["T'' = m^2*T"],
+        time="z",
+        parameters=named("m", "L", "k", "h", "T_b"),
+        at_points=["T(0) = T_b", "k*T'(L) + h*T(L) = 0"],
     )
+    assert plain(response.solutions[0].solution[0]) == (
+        "T_b*(m*k*cosh(m*(z - L)) - h*sinh(m*(z - L)))/(h*sinh(m*L) + m*k*cosh(m*L))"
+    )
+    (points,) = points_of(response)
     assert not points.provided
     assert all(argument is not None for argument in points.arguments)
+
+
+def test_a_column_clamped_at_both_ends_buckles_somewhere() -> None:
+    response = solved(
+        equations=["EI*v'''' + P*v'' = q"],
+        time="z",
+        parameters=named("EI", "P", "L", q="real"),
+        at_points=["v(0) = 0", "v'(0) = 0", "v(L) = 0", "v'(L) = 0"],
+    )
+    (points,) = points_of(response)
+    assert list(map(plain, points.provided)) == ["2*cos(omega_n*L) - 2 + omega_n*L*sin(omega_n*L)"]
+    assert "provided that 2*cos(omega_n*L) - 2" in str(response)
+
+
+def test_the_order_of_conditions_and_switchings_has_to_be_known() -> None:
+    keys = {
+        "equations": ["x'' + x = F"],
+        "inputs": {"F": [{"from": "0", "to": "T1", "is": "1"}]},
+        "parameters": named("T", "T1"),
+        "at_points": ["x(0) = 0", "x(T) = 1"],
+    }
+    with pytest.raises(UnknownOrderError):
+        solved(**keys)
+    assert len(solved(**keys, conditions=["T1 < T"]).solutions) == 1
 
 
 def test_resonance_between_two_points() -> None:
