@@ -96,10 +96,12 @@ def _added(formula: Expression, number_added: Fraction | int | None) -> Expressi
 
 def _moved(power: int, sums: Sequence[Scalar], theta: Scalar, length: Scalar) -> Scalar:
     """The sum over m of C(power, m) theta^(power - m) T^m S_m."""
-    return sum(
-        (comb(power, m) * theta ** (power - m) * length**m * own for m, own in enumerate(sums)),
-        start=theta - theta,
-    )
+
+    def moved(m: int) -> Scalar:
+        # elements of fields of functions refuse 0**0
+        return comb(power, m) * (theta ** (power - m) if power > m else 1) * length**m
+
+    return sum((moved(m) * own for m, own in enumerate(sums)), start=theta - theta)
 
 
 def _written(element: Scalar, given: Mapping[str, Expression]) -> Expression:

@@ -119,6 +119,12 @@ ONE_PERIOD: dict[str, dict[str, Any]] = {
         "pieces": [{"from": 0, "to": 1, "is": "t"}],
         "period": 3,
     },
+    "a root that is zero, late in the period": {
+        "equations": ["x'' + x' = F"],
+        "initial": {"x": 1, "x'": 1},
+        "pieces": [{"from": 3, "to": 4, "is": "t^2*exp(-2*t)"}],
+        "period": 4,
+    },
     "named roots": {
         "equations": ["x''' + 2*x'' + 3*x' + 5*x = F"],
         "initial": {"x": 0, "x'": 0, "x''": 0},
