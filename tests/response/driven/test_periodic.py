@@ -121,7 +121,7 @@ ONE_PERIOD: dict[str, dict[str, Any]] = {
     },
     "a root that is zero, late in the period": {
         "equations": ["x'' + x' = F"],
-        "initial": {"x": 1, "x'": 1},
+        "initial": {"x": 0, "x'": 0},
         "pieces": [{"from": 3, "to": 4, "is": "t^2*exp(-2*t)"}],
         "period": 4,
     },
