@@ -106,11 +106,17 @@ class OutsideConstantError(SignalError):
 
     def _paragraph(self) -> str:
         t = self.time
+        how = "make the constant a parameter"
+        if self.constant.startswith(("cos", "sin")):
+            how = (
+                f"make parameters of the sine and the cosine of a phase: exp(-a*{t})*sin(w*{t} + "
+                f"phi) is exp(-a*{t})*(C*sin(w*{t}) + S*cos(w*{t})) with C for cos(phi) and S "
+                "for sin(phi)"
+            )
         return (
             f"{quoted(self.found)} holds the constant {quoted(self.constant)}, which exact "
             "arithmetic cannot express in the numbers of the model; let all parts of a product "
-            f"count the time from one instant, as in exp(-a*({t} - T))*sin(w*({t} - T)), or make "
-            "the constant a parameter"
+            f"count the time from one instant, as in exp(-a*({t} - T))*sin(w*({t} - T)), or {how}"
         )
 
 

@@ -214,6 +214,7 @@ INPUTS = {
     '"abs(t)"': "it is no function",
     '"exp(1)"': "which exact arithmetic cannot express",
     '"delta(t - 1)*sin(t)"': "holds the constant 'sin(1)'",
+    '"exp(-t)*sin(t + 1)"': "is exp(-a*t)*(C*sin(w*t) + S*cos(w*t)) with C for cos(phi)",
     '"delta(t)*step(t)"': "has no meaning",
     '{ is = "t", period = "0" }': "the period '0' is not positive",
     '{ is = "t", period = "-2" }': "the period '-2' is not positive",
