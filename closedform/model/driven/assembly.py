@@ -21,6 +21,7 @@ from closedform.model.driven.model import (
     Jet,
     PointCondition,
 )
+from closedform.model.driven.piece_errors import EarlyRepeatError
 from closedform.model.driven.points import Point, conditions_at
 from closedform.model.driven.signal import Signal
 from closedform.model.driven.signal_algebra import mapped, numbers_of
@@ -67,6 +68,7 @@ class Assembly(Generic[T]):
         needs have no impulse there.
         """
         signals = list(self._signals)
+        self._refuse_repeats()
         if self._initial is not None and self._initial[1]:
             for place in range(self.form.typed, len(signals)):
                 later = (
@@ -255,6 +257,19 @@ class Assembly(Generic[T]):
             times=stacked.times,
         )
 
+    def _refuse_repeats(self) -> None:
+        """Raise an error for an input that has begun to repeat before the start."""
+        for column, signal in zip(self.form.acting, self._signals, strict=True):
+            repeat = signal.repeat
+            if repeat is None or self._order.compared(repeat.start, self.start) >= 0:
+                continue
+            name = "" if column.declared is None else column.declared.name
+            begins, start = (
+                plain(element_text(self.field, at)) for at in (repeat.start, self.start)
+            )
+            text = plain(column.formula)
+            raise EarlyRepeatError(self.source.at_name(f"inputs.{name}"), text, begins, start)
+
     def _refuse_impulses(self) -> None:
         """Raise an error for what follows from the inputs at each instant and holds impulses."""
         form = self.form.reduction
@@ -270,7 +285,7 @@ class Assembly(Generic[T]):
             if strike is not None:
                 given = plain(self.form.acting[strike.place].formula)
                 at = self.source.at(f"outputs.{name}") if output else self._equation_of(name)
-                raise ImpulseValueError(at, name, given, strike.at, output=output)
+                raise ImpulseValueError(at, name, given, strike.at, output)
 
     def _equation_of(self, name: str) -> Place:
         """Where an unknown first stands in an equation."""

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from functools import partial
-
 from closedform.errors import Place
 from closedform.model.driven.reduction_errors import listed_names
 from closedform.model.errors import ModelError
@@ -141,13 +139,16 @@ class PointJetError(ModelError):
 class ImpulseValueError(ModelError):
     """An unknown, or an output, that would be an impulse itself at an instant."""
 
-    def __init__(self, place: Place, name: str, given: str, at: str, *, output: bool) -> None:
-        super().__init__(place, name, given, at)
+    def __init__(
+        self,
+        place: Place,
+        name: str,
+        given: str,
+        at: str,
+        output: bool,  # noqa: FBT001  as pickled
+    ) -> None:
+        super().__init__(place, name, given, at, output)
         self.name, self.given, self.at, self.output = name, given, at, output
-
-    def __reduce__(self) -> tuple[object, ...]:
-        facts = (self.place, self.name, self.given, self.at)
-        return partial(ImpulseValueError, *facts, output=self.output), ()
 
     def _paragraph(self) -> str:
         own = f"q_{self.name}"

@@ -7,6 +7,7 @@ from closedform.model.errors import ModelError
 from closedform.notation.errors import quoted
 
 __all__ = [
+    "EarlyRepeatError",
     "ImpulseOutsideError",
     "OutsidePeriodError",
     "PeriodError",
@@ -15,7 +16,6 @@ __all__ = [
     "PiecesOverlapError",
     "RepeatCountError",
     "TwoFormsError",
-    "UnusedInputError",
 ]
 
 
@@ -136,15 +136,16 @@ class RepeatCountError(ModelError):
         )
 
 
-class UnusedInputError(ModelError):
-    """An input that drives nothing."""
+class EarlyRepeatError(ModelError):
+    """An input whose first period begins before the start of time."""
 
-    def __init__(self, place: Place, name: str) -> None:
-        super().__init__(place, name)
-        self.name = name
+    def __init__(self, place: Place, found: str, begins: str, start: str) -> None:
+        super().__init__(place, found, begins, start)
+        self.found, self.begins, self.start = found, begins, start
 
     def _paragraph(self) -> str:
         return (
-            f"the input '{self.name}' drives nothing: it stands in no equation, and in the input "
-            "matrix it has no column that is not zero; use it, or take it away"
+            f"{quoted(self.found)} repeats from {self.begins} on, which is before the start of "
+            f"time, {self.start}; begin the model at {self.begins} too, or let the periods begin "
+            f"at {self.start}: set the 'start' of the input to it, and state one period from there"
         )

@@ -168,6 +168,27 @@ def test_impulses_that_cancel_are_no_impulse(tmp_path: Path) -> None:
     assert load(path).name == "bench"
 
 
+@pytest.mark.parametrize(
+    ("start", "use", "begins"),
+    [("1/2", "F", "0"), ("2", "F", "0"), ("0", "F(t + 1)", "-1"), ("3", "F(t - 1)", "1")],
+)
+def test_periods_from_before_the_start_are_told(
+    tmp_path: Path, start: str, use: str, begins: str
+) -> None:
+    inputs = 'F = { is = "t", period = "2" }'
+    found = _found(tmp_path, _stated(f"x' = -x + {use}", inputs=inputs, more=f'start = "{start}"'))
+    assert f"repeats from {begins} on, which is before the start of time, {start}" in found
+    assert "inputs.F, line 6" in found
+
+
+def test_periods_from_the_start_or_later_are_read(tmp_path: Path) -> None:
+    path = tmp_path / "bench.toml"
+    for start, begins in (("1/2", "1/2"), ("-1", "0"), ("0", "3")):
+        inputs = f'F = {{ is = "t", period = "2", start = "{begins}" }}'
+        path.write_text(_stated("x' = -x + F", inputs=inputs, more=f'start = "{start}"'))
+        assert load(path).name == "bench"
+
+
 OUTPUTS = {
     "3": "the constant '3'",
     "x + 3": "the constant '3'",

@@ -22,7 +22,6 @@ from closedform.model.driven.piece_errors import (
     PiecesOverlapError,
     RepeatCountError,
     TwoFormsError,
-    UnusedInputError,
 )
 from closedform.model.driven.pieces import Declared, declared_inputs
 from closedform.model.driven.signal import Burst, Impulse, Repeat, Signal
@@ -245,7 +244,3 @@ def test_the_order_of_parameters_has_to_be_known(text: str, error: type[InputErr
 def test_a_python_float_is_no_instant() -> None:
     with pytest.raises(BinaryFractionError):
         declared_inputs({"u": [{"from": 0.1, "is": "1"}]}, NAMES, Source(Place()), NUMBERS)
-
-
-def test_an_unused_input_is_named() -> None:
-    assert "the input 'u' drives nothing" in str(UnusedInputError(Place(), "u"))
