@@ -9,20 +9,17 @@ Source:  The FLINT team, FLINT: Fast Library for Number Theory, flintlib.org.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
-from functools import lru_cache, reduce
+from functools import reduce
 from math import lcm
 from typing import Any
 
-from flint import Ordering, fmpz_mpoly_ctx
 from sympy.polys.domains import QQ
 
 from closedform.algebra.field import Scalar
+from closedform.algebra.fraction_field import Whole, whole_ring
 from closedform.algebra.parameter_field import Factored, ParameterField, ParameterPolynomial
 
 __all__ = ["equal_under", "fraction", "multiplied_out", "put_in", "sum_at"]
-
-Whole = Any
-"""A polynomial with whole coefficients (FLINT's fmpz_mpoly)."""
 
 
 def fraction(
@@ -53,7 +50,7 @@ def sum_at(
     divisors: Sequence[Scalar] = (),
 ) -> Scalar:
     """Return sum c_k x^k, over the product of the divisors; lowest c_k first."""
-    ring = _ring(len(field.parameters))
+    ring = whole_ring(len(field.parameters))
     x, d = _whole(ring, place.numer), _whole(ring, place.denom)
     below = _common(ring, [c.denom for c in coefficients])
     total = ring.from_dict({})
@@ -73,7 +70,7 @@ def put_in(field: ParameterField, element: Scalar, name: str, value: Scalar) -> 
 
     Raises ZeroDivisionError where its denominator vanishes there.
     """
-    ring = _ring(len(field.parameters))
+    ring = whole_ring(len(field.parameters))
     place = field.parameters.index(name)
     x, d = _whole(ring, value.numer), _whole(ring, value.denom)
     above, below = _by_degree(element.numer, place), _by_degree(element.denom, place)
@@ -86,7 +83,7 @@ def equal_under(
     field: ParameterField, first: Scalar, second: Scalar, name: str, power: int, value: Scalar
 ) -> bool:
     """Whether two elements are equal once name^power = value; lower powers stay."""
-    ring = _ring(len(field.parameters))
+    ring = whole_ring(len(field.parameters))
     sides = [_whole(ring, p) for p in (first.numer, first.denom, second.numer, second.denom)]
     difference = sides[0] * sides[3] - sides[2] * sides[1]
     place = field.parameters.index(name)
@@ -128,7 +125,7 @@ def _product(
     field: ParameterField, polynomials: Iterable[ParameterPolynomial]
 ) -> tuple[Whole, int]:
     """The product with whole coefficients, and the number by which it is too large."""
-    ring = _ring(len(field.parameters))
+    ring = whole_ring(len(field.parameters))
     total, number = _one(ring), 1
     for polynomial in polynomials:
         below = lcm(*(int(c.denominator) for c in polynomial.itercoeffs()))
@@ -173,8 +170,3 @@ def _element(field: ParameterField, upper: Whole, lower: Whole) -> Scalar:
 
 def _polynomial(ring: Any, whole: Whole) -> ParameterPolynomial:
     return ring.from_dict({tuple(map(int, m)): QQ(c) for m, c in whole.to_dict().items()})
-
-
-@lru_cache(maxsize=64)
-def _ring(variables: int) -> Any:
-    return fmpz_mpoly_ctx.get([f"x{i}" for i in range(variables)], Ordering.lex)

@@ -20,11 +20,11 @@ from operator import mul
 from typing import Any
 
 from flint import arb, ctx, fmpq
-from sympy import Symbol
 from sympy.polys.domains import QQ
 
 from closedform.algebra.enclosure import ball_of
 from closedform.algebra.field import BaseField, Scalar, rational
+from closedform.algebra.fraction_field import fraction_field
 from closedform.algebra.polynomial_factors import PolynomialTerms, irreducible_factors
 from closedform.algebra.surds import SurdSum
 
@@ -67,7 +67,7 @@ class ParameterField(BaseField):
     @cached_property
     def domain(self) -> Any:
         """The SymPy domain whose elements are the scalars of this field."""
-        return QQ.frac_field(*map(Symbol, self.parameters))
+        return fraction_field(self.parameters)
 
     @cached_property
     def _gens(self) -> dict[str, Scalar]:
@@ -186,7 +186,17 @@ class ParameterField(BaseField):
 
     def into(self, wider: ParameterField, element: Scalar) -> Scalar:
         """Return an element as one of a field that has these parameters and more."""
-        return wider.domain.convert(element, self.domain)
+        if wider.parameters == self.parameters:
+            return element
+        places = [wider.parameters.index(name) for name in self.parameters]
+        fractions = wider.domain.field
+        above, below = (
+            _moved(fractions.ring, polynomial, places)
+            for polynomial in (element.numer, element.denom)
+        )
+        if below.LC < 0:  # the order of the parameters may be another
+            above, below = -above, -below
+        return fractions.raw_new(above, below)
 
     def derivative(self, element: Scalar, name: str) -> Scalar:
         """Return the partial derivative with respect to a parameter."""
@@ -267,6 +277,19 @@ class ParameterField(BaseField):
             return []
         terms = [*element.numer.coeffs(), *(element.denom.coeffs() if element.denom != 1 else ())]
         return [(int(c.numerator), int(c.denominator), 1) for c in terms]
+
+
+def _moved(
+    ring: Any, polynomial: ParameterPolynomial, places: Sequence[int]
+) -> ParameterPolynomial:
+    """A polynomial in another ring, with the places there of its parameters."""
+    terms = {}
+    for monomial, coefficient in polynomial.iterterms():
+        exponents = [0] * ring.ngens
+        for place, exponent in zip(places, monomial, strict=True):
+            exponents[place] = exponent
+        terms[tuple(exponents)] = coefficient
+    return ring.dtype(terms)
 
 
 def _sign_in_pi(coefficients: Sequence[SurdSum]) -> int:
