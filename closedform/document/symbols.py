@@ -35,10 +35,11 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     blocks                     indices: number of columns; parts   [A, B; 0, W]
     interval                   indices: both, from, until or       a <= t < b
                                otherwise; argument [t]; parts
-    sinusoid                   parts: amplitude, angle, phase      a cos(omega t - phi)
+    sinusoid                   indices: cos [cos] or sin           a cos(omega t - phi)
+                               parts: amplitude, angle, phase
     turn                       indices: above, below               3 pi/4
     arc                        indices: sign; parts: turn, ratio   pi - arctan r
-    angle of                   parts: y, x                         angle of the point (x, y)
+    angle of                   parts: y, x                         atan2(y, x)
     cases                      parts: value, interval, …           { 0, t < a; 1, otherwise
 
 A letter that ends in _hat has a wide hat.
@@ -268,7 +269,8 @@ def _sinusoid(symbol: Symbol) -> Box:
         front = bracketed(front)
     one = isinstance(amplitude, Number) and amplitude.value == 1
     head = [] if one else [front, plain(r"\,", 0.2)]
-    return joined(*head, plain(r"\cos", 1.2), bracketed(inside))
+    kernel = plain(r"\sin" if symbol.indices == ("sin",) else r"\cos", 1.2)
+    return joined(*head, kernel, bracketed(inside))
 
 
 def _arc(symbol: Symbol) -> Box:
@@ -282,8 +284,8 @@ def _arc(symbol: Symbol) -> Box:
 
 def _angle_of(symbol: Symbol) -> Box:
     y, x = map(side_box, symbol.parts)
-    point = bracketed(joined(x, plain(r",\, ", 0.4), y))
-    return joined(plain(r"\angle", 0.8), point)
+    point = bracketed(joined(y, plain(r",\, ", 0.4), x))
+    return joined(plain(r"\operatorname{atan2}", 2.6), point)
 
 
 def _cases(symbol: Symbol) -> Box:

@@ -208,7 +208,8 @@ def _phasor(
     for k, sinusoid in enumerate(phasor.sinusoids):
         symbol = _phase_symbol(writing, row, k, len(phasor.sinusoids))
         argument = _argument(writing, sinusoid)
-        parts.append(Symbol("sinusoid", parts=(sinusoid.amplitude, argument, symbol)))
+        kernel = "cos" if sinusoid.sine_phase is None else "sin"
+        parts.append(Symbol("sinusoid", (kernel,), parts=(sinusoid.amplitude, argument, symbol)))
         phases.append(_phase(sinusoid, symbol))
     side = parts[0] if len(parts) == 1 else Symbol("sum", parts=tuple(parts))
     symbol = Symbol("scalar", ("steady",), writing.t, name)
@@ -229,8 +230,11 @@ def _argument(writing: Writing, sinusoid: Sinusoid) -> Expression:
 
 
 def _phase(sinusoid: Sinusoid, symbol: Symbol) -> dict[str, Any]:
-    """The phase by its arc tangent and its quadrant; else by its cosine and sine."""
-    angle = sinusoid.phase
+    """The phase by its arc tangent and its quadrant; else by its sine and cosine.
+
+    It is that of a sine where sines drive, so that it is the lag of the textbooks.
+    """
+    angle = sinusoid.phase if sinusoid.sine_phase is None else sinusoid.sine_phase
     value: Side = Symbol("angle of", parts=(angle.above, angle.beside))
     if angle.arc is not None:
         turn, direction, ratio = angle.arc

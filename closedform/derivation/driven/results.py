@@ -45,7 +45,8 @@ def _steps(
         if solution.points is None:
             yield split_step(writing, solution, facts)
     yield from periodic_steps(writing, solution, facts)
-    yield stability_step(writing, solution, facts)
+    if solution.points is None:  # else nothing is let go in time: both ends are given
+        yield stability_step(writing, solution, facts)
     if not solution.periodic:
         yield steady_step(writing, solution, facts)
         yield transient_step(writing, solution, facts)

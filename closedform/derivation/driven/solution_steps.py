@@ -245,7 +245,7 @@ def driven_solution_step(
         symbol = writing.function(model.rows[row])
         if not several:
             statement = Statement("driven solution", (symbol, solution.pieces[0][row]))
-            rows.append({"pieces": None, "steps": statement, "lines": ()})
+            rows.append({"whole": None, "steps": statement, "lines": ()})
             continue
         parts: list[Side] = []
         lines = []
@@ -260,7 +260,7 @@ def driven_solution_step(
             )
         pieces = Statement("driven solution", (symbol, Symbol("cases", parts=tuple(parts))))
         steps = Statement("with unit steps", (symbol, solution.solution[row]))
-        rows.append({"pieces": pieces, "lines": lines, "steps": steps})
+        rows.append({"whole": pieces, "lines": lines, "steps": steps})
     told = {
         **facts,
         "rows": rows,

@@ -36,7 +36,7 @@ def state_form_step(writing: Writing) -> Step | None:
         "n": len(model.names),
         "several": len(_tops(writing)) > 1,
     }
-    return Step("state_form", tuple(statements), facts, ("driven_model",))
+    return Step("state_form", tuple(statements), facts, ("driven_model",), "summary")
 
 
 def _tops(writing: Writing) -> list[Jet]:

@@ -104,16 +104,25 @@ def _value_formula(value: SurdSum) -> Expression:
     return decimal_formula(shown) if isinstance(shown, str) else shown
 
 
-def _in_numbers(writing: Writing, numbers: DrivenNumbersAt, row: int, name: str) -> Statement:
+def _in_numbers(
+    writing: Writing, numbers: DrivenNumbersAt, row: int, name: str
+) -> dict[str, object]:
+    """A row as a whole, and interval by interval where there are several."""
     symbol = writing.function(name)
     pieces = [piece[row] for piece in numbers.pieces]
     rounded = any(p.rounded for p in pieces) or any(at.rounded for at in numbers.instants)
     relation = APPROXIMATELY if rounded else "="
     if len(pieces) == 1:
-        return Statement("in numbers", (symbol, pieces[0].formula), relation)
+        whole = Statement("in numbers", (symbol, pieces[0].formula), relation)
+        return {"whole": whole, "lines": []}
     parts: list[Side] = []
+    lines: list[dict[str, object]] = []
     for place, piece in enumerate(pieces):
         last = place + 1 == len(pieces)
         end: Expression | None = None if last else numbers.instants[place + 1].formula
-        parts += [piece.formula, interval(writing.t, numbers.instants[place].formula, end)]
-    return Statement("in numbers", (symbol, Symbol("cases", parts=tuple(parts))), relation)
+        when = interval(writing.t, numbers.instants[place].formula, end)
+        parts += [piece.formula, when]
+        line = Statement("in numbers", (symbol, piece.formula), relation)
+        lines.append({"place": place, "when": when, "statement": line})
+    whole = Statement("in numbers", (symbol, Symbol("cases", parts=tuple(parts))), relation)
+    return {"whole": whole, "lines": lines}

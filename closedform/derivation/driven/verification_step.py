@@ -1,4 +1,7 @@
-"""The step that lists what was proved of a driven model."""
+"""The step that lists what was proved of a driven model.
+
+Short documents name what was proved and what was enclosed; full ones say of each how.
+"""
 
 from __future__ import annotations
 
@@ -35,11 +38,18 @@ _WORDS = {
     "x(start) = x0": "initial values",
     "jumps h": "jumps",
     "joins": "continuity at the joins",
+    "A as stated": "the matrix as stated",
+    "two routes": "the resolvent and the canonical form agree",
+    "stacked matrix": "the matrix of states and inputs",
+    "one case applies": "exactly one case applies",
 }
+_PERIOD = "one period: "
+_FIRST = ("equations as typed", "x(start) = x0", "joins", "jumps h")
+"""What is named first, for it is what counts."""
 
 
 def driven_verification_step(checks: Sequence[Check], time: str, *, hats: bool) -> Step:
-    """List what was proved or enclosed; in `rows` what is proved exactly stands together.
+    """List what was proved or enclosed; in `gathered` all of one outcome stands together.
 
     With `hats` what is said of A, where it is the matrix that was solved for, is said of the
     stacked matrix.
@@ -48,15 +58,10 @@ def driven_verification_step(checks: Sequence[Check], time: str, *, hats: bool) 
         {"item": printed_item(check.item, time), "outcome": check.outcome, "how": check.how}
         for check in checks
     ]
-    proved = [row for row in rows if row["outcome"] == "proved"]
-    how: list[object] = []
-    for row in proved:
-        how += [row["item"], ", "]
-    whole: dict[str, object] = {"item": "identities", "outcome": "proved", "how": how[:-1]}
-    others = [row for row in rows if row["outcome"] != "proved"]
     facts = {
-        "rows": [whole, *others] if proved else others,
+        "rows": rows,
         "full_rows": rows,
+        "gathered": _gathered(checks, time),
         "compact": True,
         "open": False,
     }
@@ -67,7 +72,25 @@ def driven_cases_step(
     checks: Sequence[Check], records: CaseRecords, stacked: ParametricResponse, *, hats: bool
 ) -> Step:
     """List what was proved of a model with parameters, of all cases and of each."""
-    return _retold(verification_step(checks, records, stacked), hats=hats)
+    step = verification_step(checks, records, stacked)
+    every = [*checks, *(check for record in records.cases for check in record.checks)]
+    gathered = _gathered(every, stacked.model.time)
+    return _retold(replace(step, facts={**step.facts, "gathered": gathered}), hats=hats)
+
+
+def _gathered(checks: Sequence[Check], time: str) -> dict[str, list[object]]:
+    """The items of each outcome, each named once; what is open with its reason."""
+    found: dict[str, list[object]] = {"proved": [], "enclosed": [], "open": []}
+    first = [check for check in checks if check.item in _FIRST]
+    for check in [*first, *(check for check in checks if check not in first)]:
+        item: object = printed_item(check.item.removeprefix(_PERIOD), time)
+        if check.outcome in found:
+            told = found[check.outcome]
+        else:
+            told, item = found["open"], [item, ":", check.how]
+        if item not in told:
+            told.append(item)
+    return found
 
 
 def _retold(step: Step, *, hats: bool) -> Step:

@@ -7,7 +7,7 @@ by ball arithmetic on the written formulas, or exact.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from flint import arb
 
@@ -88,7 +88,7 @@ def driven_numbers_at(
     Raises:  ValuesNotCoveredError, UnsettledError, TooManyRootsError; TypeError for a model
              without parameters.
     """
-    stacked, model = response.stacked, response.model
+    stacked = response.stacked
     if not isinstance(stacked, ParametricResponse):
         raise TypeError("a model without parameters has its numbers already")
     field, values = stacked.model.field, dict(given.values)
@@ -100,6 +100,9 @@ def driven_numbers_at(
     points = () if solution.points is None else solution.points.constants
     names = [*(q.name for q in case.quantities), *(c.name for c in points if not c.put_in)]
     writer = _Writer(field, solution, known, digits)
+    pieces = writer.pieces()
+    if any(piece.rounded for rows in pieces for piece in rows):
+        pieces = replace(writer, decimals=True).pieces()
     return DrivenNumbersAt(
         given.label,
         tuple((name, values[name]) for name in field.free),
@@ -109,10 +112,7 @@ def driven_numbers_at(
             for name in names
         ),
         tuple(writer.number(interval.start) for interval in solution.functions.intervals),
-        tuple(
-            tuple(writer.formula(row, interval) for row in range(len(model.rows)))
-            for interval in solution.functions.intervals
-        ),
+        pieces,
         instants,
         tuple(_row(solution, known, exact, t, digits) for t in instants),
     )
@@ -126,10 +126,18 @@ class _Writer:
     solution: DrivenSolution
     known: Known
     digits: int
+    decimals: bool = False
+
+    def pieces(self) -> tuple[tuple[InNumbers, ...], ...]:
+        """Return what each interval gives for each row."""
+        rows = range(len(self.solution.model.rows))
+        intervals = self.solution.functions.intervals
+        return tuple(tuple(self.formula(row, interval) for row in rows) for interval in intervals)
 
     def number(self, element: object) -> InNumbers:
         """Return an element of the field as a number."""
-        return self._in_numbers(element_formula(self.field, element))
+        formula, time = element_formula(self.field, element), self.solution.model.time
+        return in_numbers(formula, self.known, time, self.digits)
 
     def formula(self, row: int, interval: Interval) -> InNumbers:
         """Return what an interval gives for a row."""
@@ -150,7 +158,8 @@ class _Writer:
         return InNumbers(opened(sum_of(standing)) if standing else ZERO, rounded)
 
     def _in_numbers(self, formula: Expression) -> InNumbers:
-        return in_numbers(formula, self.known, self.solution.model.time, self.digits)
+        time = self.solution.model.time
+        return in_numbers(formula, self.known, time, self.digits, decimals=self.decimals)
 
 
 def _row(

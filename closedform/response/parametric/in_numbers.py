@@ -91,24 +91,30 @@ class InNumbers:
     rounded: bool
 
 
-def in_numbers(formula: Expression, known: Known, time: str, digits: int) -> InNumbers:
+def in_numbers(
+    formula: Expression, known: Known, time: str, digits: int, *, decimals: bool = False
+) -> InNumbers:
     """Return a formula of a case with the values put in and the arithmetic done.
 
     cosh and sinh become exponentials, for -delta + kappa may have no digit left where both
     are rounded; they stay where kappa is small, and the two rates would read alike.
 
     Every number is rational and exact, if its decimal or its numerator and denominator have
-    up to `digits` digits, and else correctly rounded to them.
+    up to `digits` digits, and else correctly rounded to them.  Where one is rounded all are
+    decimals; so they are with `decimals`, for a formula that stands beside others.
 
     Raises UnsettledError for a number that is 0 without this being known exactly.
     """
-    writer = _Writer(known, time, digits)
+    writer = _Writer(known, time, digits, decimals=decimals)
     part = writer.parted(formula)
     if writer.has_close_rates:
-        writer = _Writer(known, time, digits, splits=False)
+        writer = _Writer(known, time, digits, splits=False, decimals=decimals)
         part = writer.parted(formula)
     written = writer.written(part)
-    return InNumbers(written, bool(writer.rounded & names_in(written)))
+    rounded = bool(writer.rounded & names_in(written))
+    if rounded and not decimals:
+        return in_numbers(formula, known, time, digits, decimals=True)
+    return InNumbers(written, rounded)
 
 
 def decimal_formula(text: str) -> Expression:
@@ -128,8 +134,17 @@ def _split(text: str) -> tuple[bool, str, str]:
 class _Writer:
     """Takes a formula apart into weights without the time and the functions beside them."""
 
-    def __init__(self, known: Known, time: str, digits: int, *, splits: bool = True) -> None:
+    def __init__(
+        self,
+        known: Known,
+        time: str,
+        digits: int,
+        *,
+        splits: bool = True,
+        decimals: bool = False,
+    ) -> None:
         self.known, self.time, self.digits, self.splits = known, time, digits, splits
+        self.decimals = decimals
         self.rounded: set[str] = set()
         self.has_close_rates = False
 
@@ -264,4 +279,4 @@ class _Writer:
         if Fraction(text) == value:
             return decimal_formula(text)
         length = len(str(abs(value.numerator))) + len(str(value.denominator))
-        return number(value) if length <= self.digits else None
+        return number(value) if length <= self.digits and not self.decimals else None

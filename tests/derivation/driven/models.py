@@ -68,6 +68,11 @@ MODELS: dict[str, dict[str, Any]] = {
         "inputs": {"u": {"is": "D*delta(t)", "period": "T"}},
         "initial": {"q": 1},
     },
+    "floor that shakes": {
+        "equations": ["x'' + 2*x' + 5*x = 2*y' + 5*y"],
+        "inputs": {"y": "3*sin(4*t)"},
+        "initial": {"x": 0, "x'": 0},
+    },
     "five pulses": {
         "equations": ["x'' + 4*x = F"],
         "inputs": {

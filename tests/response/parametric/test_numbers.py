@@ -234,7 +234,12 @@ WRITTEN = [
     ("damped", 4, "cos(2*t)", False),
     ("decay", 2, "5*exp(-t)", False),
     ("masses", 3, "cos(t)", False),
-    ("free masses", 1, "5/3 + t/3 - 2*cos(1.22474*t)/3 + 2.17732*sin(1.22474*t)", True),
+    (
+        "free masses",
+        1,
+        "1.66667 + 0.333333*t - 0.666667*cos(1.22474*t) + 2.17732*sin(1.22474*t)",
+        True,
+    ),
     ("compartments", 2, "1.57735*exp(-3.73205*t) + 0.422650*exp(-0.267949*t)", True),
 ]
 

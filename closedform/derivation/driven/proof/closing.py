@@ -233,7 +233,8 @@ def by_amplitude(spot: Spot, said: Said) -> Iterator[Finding]:
                     return
                 turn = ball_at(formula_of(argument), names)
                 shift = angle_at(spot, phases[name])
-                total += ball_at(formula_of(amplitude), names) * (turn - shift).cos()
+                wave = (turn - shift).sin() if part.indices == ("sin",) else (turn - shift).cos()
+                total += ball_at(formula_of(amplitude), names) * wave
             else:
                 total += ball_at(formula_of(part), names)
         yield equal("amplitude and phase", total, ball_at(formula, names))

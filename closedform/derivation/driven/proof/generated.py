@@ -141,35 +141,37 @@ def named_input(spot: Spot, said: Said) -> Iterator[Finding]:
         yield equal("input", value, spot.input_series(found[0], place, t)[0])
 
 
-def _order_of(spot: Spot, name: str) -> tuple[int, int] | None:
-    """Which input a name with primes belongs to, and its derivative beyond the input's own."""
+def _orders_of(spot: Spot, name: str) -> dict[int, int]:
+    """The inputs that a name with primes belongs to, and its derivative beyond each one's own.
+
+    Where y and y' are inputs both, y'' belongs to both.
+    """
+    found = {}
     for k, label in enumerate(Writing(spot.model).inputs):
         more = name.removeprefix(label.text)
         if name.startswith(label.text) and not more.strip("'"):
-            return k, len(more)
-    return None
+            found[k] = len(more)
+    return found
 
 
 def annihilation(spot: Spot, said: Said) -> Iterator[Finding]:
     """alpha(d/dt) u = 0, for every wave of the input."""
     formula, zero = map(formula_of, said.statement.sides)
-    names = sorted(n for n in names_in(formula) if _order_of(spot, n) is not None)
-    places = {_order_of(spot, name) for name in names}
-    columns = {place[0] for place in places if place is not None}
-    if len(columns) != 1:
+    orders = {name: _orders_of(spot, name) for name in sorted(names_in(formula))}
+    orders = {name: found for name, found in orders.items() if found}
+    columns = set(range(len(spot.model.inputs))).intersection(*orders.values())
+    if not orders or not columns:
         yield Fault("equation of an input", "it is not of one input")
         return
-    (column,) = columns
     yield Comparison("right side", ball_at(zero, {}), acb(0))
-    for burst in spot.model.inputs[column].signal.bursts:
-        for wave in burst.waves:
-            t = spot.element(wave.origin) + acb(5) / 7
-            series = spot.wave_at(wave, acb_series([t, acb(1)], SERIES))
-            values: dict[str, Any] = dict(spot.names)
-            for name in names:
-                found = _order_of(spot, name)
-                values[name] = derivative(series, found[1] if found else 0)
-            yield equal("equation of an input", ball_at(formula, values), acb(0))
+    for column in sorted(columns):
+        for burst in spot.model.inputs[column].signal.bursts:
+            for wave in burst.waves:
+                t = spot.element(wave.origin) + acb(5) / 7
+                series = spot.wave_at(wave, acb_series([t, acb(1)], SERIES))
+                values: dict[str, Any] = dict(spot.names)
+                values |= {n: derivative(series, found[column]) for n, found in orders.items()}
+                yield equal("equation of an input", ball_at(formula, values), acb(0))
 
 
 def generator_vector(spot: Spot, said: Said) -> Iterator[Finding]:

@@ -69,8 +69,11 @@ def number_set(spot: Spot, step: Step, held: Mapping[str, Any]) -> Iterator[Find
             yield Fault(f"{name} in numbers", "the case has no such name")
             return
         yield decimal_of(f"{name} in numbers", quantity["decimal"], acb(spot.names[name]), digits)
-    for statement in held["formulas"]:
-        yield from _formula(spot, statement, digits)
+    for row in held["formulas"]:
+        yield from _formula(spot, row["whole"], digits, spot.places)
+        for line in row["lines"]:
+            place = line["place"]
+            yield from _formula(spot, line["statement"], digits, range(place, place + 1))
     yield from _table(spot, step, held)
 
 
@@ -78,7 +81,7 @@ def _number(formula: Any) -> acb:
     return acb(ball_at(formula, {text: acb(number_in(text)) for text in names_in(formula)}))
 
 
-def _formula(spot: Spot, statement: Any, digits: int) -> Iterator[Finding]:
+def _formula(spot: Spot, statement: Any, digits: int, places: range) -> Iterator[Finding]:
     """A formula with numbers agrees; with rounded ones to a digit less than these have."""
     symbol, side = statement.sides
     model = spot.model
@@ -91,7 +94,7 @@ def _formula(spot: Spot, statement: Any, digits: int) -> Iterator[Finding]:
         for formula in expressions_in(side)
         for text in names_in(formula) - {model.time}
     }
-    for place in spot.places:
+    for place in places:
         for t in spot.times(place):
             names = {**decimals, model.time: t}
             try:
