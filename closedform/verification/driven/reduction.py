@@ -12,7 +12,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 
-from closedform.algebra.domain import Comparison
+from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.model.driven.model import Jet
 from closedform.verification.driven.identities import Residual, identity_check
@@ -213,7 +213,9 @@ def _never_zero(setting: Setting, element: Scalar) -> bool:
     case = setting.solution.case
     if case is None:
         return bool(element)
-    field = case.domain.field
+    field, assumed = case.domain.field, setting.model.domain
+    known = (*case.domain.conditions, *(() if assumed is None else assumed.conditions))
+    domain = ParameterDomain(field, tuple(dict.fromkeys(known)))
     below = Comparison(field.of_polynomial(element.denom), "!=")
     above = Comparison(field.of_polynomial(element.numer), "!=")
-    return all(follows(field, case.domain, comparison) for comparison in (above, below))
+    return all(follows(field, domain, comparison) for comparison in (above, below))

@@ -15,6 +15,7 @@ from closedform.algebra.equations import linear_solution
 from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.errors import Place
+from closedform.model.parametric import ParametricModel
 from closedform.notation.errors import FormulaError
 from closedform.notation.expression import (
     Call,
@@ -71,7 +72,7 @@ def divisor_check(
     model = response.model
     names = tuple(q.name for q in case.quantities)
     field = ParameterField(parameters=(*model.field.parameters, *names))
-    domain = _with_names(model.field, field, case)
+    domain = _with_names(model, field, case)
     factors: dict[Scalar, None] = {}
     try:
         for below in divisors():
@@ -84,10 +85,12 @@ def divisor_check(
         for name, value in _solved_equations(model.field, case)
     ]
     ways: list[dict[str, Scalar]] = [{}, _rational_definitions(field, case), *solved]
+    squares = _squares(field, case)
     undecided = [
         d
         for d in factors
         if not any(domain.sign_of(field.substituted(d, put)).never_zero for put in ways)
+        and not domain.sign_of(_with_squares(field, d, squares)).never_zero
     ]
     if undecided:
         how = f"it was not decided whether {undecided[0]} may vanish"
@@ -152,14 +155,18 @@ def _factors(field: ParameterField, element: Scalar) -> Iterator[Scalar]:
             yield field.of_polynomial(polynomial)
 
 
-def _with_names(base: ParameterField, field: ParameterField, case: Case) -> ParameterDomain:
+def _with_names(model: ParametricModel, field: ParameterField, case: Case) -> ParameterDomain:
     """The domain of the case, what it excludes, and what its regimes say about the names.
+
+    What is assumed of the model holds in the case too, if it was put in or not.
 
     Frequencies are positive, roots of one factor are in their order, and none of them is a
     root of another factor: the resultant of the two does not vanish on the case.
     """
+    base = model.field
     known = [
         *case.domain.conditions,
+        *model.domain.conditions,
         *_with_equations_put_in(base, case),
         *(
             Comparison(e.polynomials[0], "!=")
@@ -199,6 +206,33 @@ def _rational_definitions(field: ParameterField, case: Case) -> dict[str, Scalar
             value = rational_value(formula, field, Place())
             found[quantity.name] = field.substituted(value, found)
     return found
+
+
+def _squares(field: ParameterField, case: Case) -> dict[str, Scalar]:
+    """The names that stand for a square root, each with its square."""
+    return {
+        quantity.name: rational_value(quantity.formula.argument, field, Place())
+        for quantity in case.quantities
+        if isinstance(quantity.formula, Call)
+        and quantity.formula.function == "sqrt"
+        and not _has_root(quantity.formula.argument)
+    }
+
+
+def _with_squares(field: ParameterField, element: Scalar, squares: dict[str, Scalar]) -> Scalar:
+    """A polynomial with the squares of names put in, those that stand in even powers alone."""
+    for name, square in reversed(squares.items()):
+        place = field.parameters.index(name)
+        terms = dict(element.numer)
+        if element.denom != 1 or any(monomial[place] % 2 for monomial in terms):
+            continue
+        halved = {
+            (*monomial[:place], monomial[place] // 2, *monomial[place + 1 :]): c
+            for monomial, c in terms.items()
+        }
+        own = field.of_polynomial(element.numer.ring.from_dict(halved))
+        element = field.of_polynomial(field.substituted(own, {name: square}).numer)
+    return element
 
 
 def _with_equations_put_in(base: ParameterField, case: Case) -> Iterator[Comparison]:
