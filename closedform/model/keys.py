@@ -138,6 +138,8 @@ def check_keys(mapping: Mapping[str, object], source: Source) -> None:
                 raise MixedFormsError(source.at_name(key), first, key)
     _check_driven(mapping, form, source)
     needed = TITLE | FORMS[form]
+    if "damping" in mapping and "mass" not in mapping:  # C q' + K q = G u, of first order
+        needed = {key: example for key, example in needed.items() if key != "mass"}
     if "at_points" not in mapping:
         needed |= {"initial": INITIAL[form]}
     for key, example in needed.items():

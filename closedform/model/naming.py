@@ -17,11 +17,19 @@ from closedform.model.errors import (
     WrongKindError,
 )
 from closedform.model.source import Source
-from closedform.notation.expression import FUNCTIONS
+from closedform.notation.expression import FUNCTIONS, SIGNALS
 from closedform.notation.greek import ascii_name
 from closedform.notation.latex.names import printed_key
 
-__all__ = ["MOST_STATES", "Names", "check_states", "check_time", "named_at", "named_in"]
+__all__ = [
+    "MOST_STATES",
+    "Names",
+    "check_states",
+    "check_time",
+    "named_at",
+    "named_in",
+    "refuse_impulse",
+]
 
 MOST_STATES = 400
 LONGEST_NAME = 64
@@ -33,6 +41,8 @@ KEPT = {
 }
 """Names that mean something else in a formula, and what to write."""
 LETTERS_OF_WRITE_UPS = ("lambda", "mu", "s", "p", "g", "r")
+VARYING = ("an input", "an unknown")
+"""What depends on the time, and so may have it in brackets."""
 NOTHING: Mapping[str, str] = {}
 
 
@@ -65,9 +75,18 @@ def named_at(places: Mapping[str, str], kind: str, names: Names, source: Source)
     """
     printed = {printed_key(name): name for name in (names.time, *names.taken)}
     for name, place in places.items():
+        if kind in VARYING:
+            refuse_impulse(name, place, source)
         check_name(name, place, source, time=names.time, taken=names.taken)
         check_lookalike(name, place, source, printed)
     return names.added(places, kind)
+
+
+def refuse_impulse(name: str, key: str, source: Source) -> None:
+    """Raise UnusableNameError for what depends on the time under the name of the impulse."""
+    if name in SIGNALS and name not in FUNCTIONS:
+        reason = f"{name}(…) means a function in formulas; write '{name}_1', or choose another"
+        raise UnusableNameError(_place(key, source), name, reason)
 
 
 def check_name(

@@ -42,7 +42,8 @@ class Vocabulary:
     def varies(self, name: str) -> bool:
         """Whether a name without primes depends on the time."""
         if self.functions is None:
-            return not (name in self.names or name in FUNCTIONS or name.lower() in NEVER_UNKNOWN)
+            word = name if len(name) == 1 else name.lower()  # E is a voltage, e a number
+            return not (name in self.names or name in FUNCTIONS or word in NEVER_UNKNOWN)
         return name in self.functions
 
     def knows(self, name: str) -> bool:

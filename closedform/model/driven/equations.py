@@ -21,7 +21,7 @@ from closedform.model.driven.signal_reading import signal_of
 from closedform.model.driven.statement import Row, Statement
 from closedform.model.entries import kind_of
 from closedform.model.errors import TooManyStatesError, WrongKindError
-from closedform.model.naming import MOST_STATES, named_at
+from closedform.model.naming import MOST_STATES, named_at, refuse_impulse
 from closedform.model.statement import array_of
 from closedform.notation.equation import read_equation
 from closedform.notation.expression import Expression, Negation, Sum
@@ -48,6 +48,8 @@ def stated_by_equations(
              reader of equations and the arithmetic raise.
     """
     source = numerals.source
+    for k, name in enumerate(given, start=1):
+        refuse_impulse(name, f"states[{k}]", source)
     texts = _texts(value, numerals)
     functions = frozenset(given) | columns.names if given else None
     reading = _Equations(numerals, columns, functions)

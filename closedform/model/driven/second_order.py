@@ -22,7 +22,9 @@ def stated_by_masses(
     numerals: Numerals[T],
     columns: InputColumns[T],
 ) -> Statement[T]:
-    """Return what `mass`, `damping` (may be left out), `stiffness` and `input_matrix` state.
+    """Return what `mass`, `damping`, `stiffness` and `input_matrix` state.
+
+    One of `mass` and `damping` may be left out: that matrix is zero.
 
     Shapes:  n rows of n entries for n coordinates; `input_matrix` n rows, an entry for each
     declared input.
@@ -39,6 +41,7 @@ def stated_by_masses(
     if "input_matrix" in mapping:
         driving = input_matrix_of(mapping["input_matrix"], n, len(inputs), source, numerals.entry)
     places = [columns.of(name) for name in inputs]
+    first = "mass" if "mass" in mapping else "damping"
 
     def row(i: int) -> Row[T]:
         jets = [
@@ -47,6 +50,6 @@ def stated_by_masses(
             for j, name in enumerate(coordinates)
         ]
         acting = list(zip(places, inputs, driving[i], strict=True))
-        return row_of(numerals, jets, ((), acting), f"mass[{i + 1}]")
+        return row_of(numerals, jets, ((), acting), f"{first}[{i + 1}]")
 
     return Statement("second order", coordinates, tuple(row(i) for i in range(n)))
