@@ -162,6 +162,18 @@ class BaseField:
         """Return the polynomial with these coefficients, highest first."""
         return DMP(dup_strip(list(coefficients)), self.domain, 0)
 
+    def inverse_modulo(self, p: Polynomial, q: Polynomial) -> Polynomial:
+        """Return the inverse of q modulo p.  Raises ZeroDivisionError if they share a root.
+
+        What is left of Euclid's algorithm is a number, by which its cofactor is divided: with
+        pi and square roots in the field the number 1 has many forms, and SymPy's own inverse
+        knows one of them.
+        """
+        cofactor, left = q.rem(p).half_gcdex(p)
+        if left.degree():
+            raise ZeroDivisionError(f"{q} has no inverse modulo {p}")
+        return cofactor * (self.domain.one / left.nth(0))
+
     def matrix(self, rows: Sequence[Sequence[Scalar]]) -> FieldMatrix:
         """Return the dense matrix with these rows (at least one row and column)."""
         return DomainMatrix(

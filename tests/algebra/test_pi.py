@@ -182,3 +182,17 @@ def test_values_without_pi_have_the_smaller_field() -> None:
     into = value_field(FIELD, [of("k + w")], {"k": ROOT_TWO, "w": SurdSum.rational(3)})
     assert not isinstance(into, FieldWithPi)
     assert into.radicands == (2,)
+
+
+@given(st.lists(WHOLE, min_size=2, max_size=2), st.integers(1, 9))
+def test_what_is_beside_pi_and_roots_has_an_inverse_modulo_a_polynomial(
+    coefficients: list[int], amount: int
+) -> None:
+    into = FieldWithPi((15,))
+    root = into.scalar(SurdSum.of({15: Fraction(amount)})) + into.pi
+    p = into.polynomial([into.domain.one, root / (into.pi + 1), root**2 + into.pi])
+    q = into.polynomial([root * coefficients[0] + 1, into.pi * coefficients[1] - root])
+    left = (q * into.inverse_modulo(p, q) - into.polynomial([into.domain.one])).rem(p)
+    assert left.is_zero
+    with pytest.raises(ZeroDivisionError):
+        into.inverse_modulo(p, p * q)

@@ -169,7 +169,7 @@ def _weights(
         if term.is_square:
             yield part, (r.diff() + r * s).rem(part)
         else:
-            yield part, (r * term.p.diff().rem(part).invert(part)).rem(part)
+            yield part, (r * field.inverse_modulo(part, term.p.diff())).rem(part)
 
 
 def _turning(field: BaseField, constant: Constant) -> list[tuple[_Complex, Scalar]]:

@@ -110,7 +110,7 @@ class FunctionsAt:
                 if term.is_square:
                     weight = (r.diff() + r * field.scalar(t)).rem(part)
                 else:
-                    weight = (r * term.p.diff().rem(part).invert(part)).rem(part)
+                    weight = (r * field.inverse_modulo(part, term.p.diff())).rem(part)
                 found[part] = found.get(part, field.polynomial([])) + weight
         return ((part, weight) for part, weight in found.items() if not weight.is_zero)
 

@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from fractions import Fraction
+from typing import Any
 
 import pytest
-from flint import arb, ctx
+from flint import acb_mat, arb, arb_mat, ctx
 
 from closedform.algebra.enclosure import ball_of
 from closedform.algebra.surds import SurdSum
@@ -25,6 +26,7 @@ from closedform.response.driven.response import respond_driven
 from closedform.response.driven.sampling import sampled_rows
 from closedform.response.parametric.numbers import ValuesNotCoveredError
 from tests.response.driven.stated import numeric, parametric, pulse, sine
+from tests.verification.driven.made import stated
 
 Make = Callable[[Mapping[str, Fraction] | None], DrivenModel]
 
@@ -146,3 +148,42 @@ def test_without_values_there_are_no_numbers() -> None:
 def test_values_outside_the_domain_are_refused() -> None:
     with pytest.raises(ValuesNotCoveredError):
         numbers(pump, {"k": -1, "q": 2, "T": 5, "x0": 1})
+
+
+@pytest.mark.parametrize(
+    ("damping", "stiffness", "given"),
+    [
+        ("1", "4", {}),
+        ("d", "4", {"d": "1/2"}),
+        ("4", "5", {}),
+        ("2", "1", {}),
+        ("7", "s", {"s": 5}),
+    ],
+)
+def test_an_oscillator_at_two_pi_has_the_values_of_an_exponential(
+    damping: str, stiffness: str, given: Mapping[str, str | int]
+) -> None:
+    mapping: dict[str, Any] = {
+        "equations": [f"x'' + {damping}*x' + {stiffness}*x = sin(2*pi*t)"],
+        "initial": {"x": 0, "x'": 0},
+    }
+    if given:
+        mapping["parameters"] = {
+            name: {"assume": "positive", "value": value} for name, value in given.items()
+        }
+    (found,) = driven_numbers_of(respond_driven(stated(mapping)), digits=10)
+    c, k = (Fraction(given.get(text, 0)) or Fraction(text) for text in (damping, stiffness))
+    with ctx.workprec(200):
+        w = 2 * arb.pi()
+        zero, one, below = arb(0), arb(1), [-_ball(k), -_ball(c)]
+        rows = [[zero, one, zero, zero], [*below, one, zero], [zero, zero, zero, one]]
+        matrix = arb_mat([*rows, [zero, zero, -(w**2), zero]])
+        for t, row in zip(found.times, found.rows, strict=True):
+            end = acb_mat(matrix * ball_of(t)).exp() * acb_mat([[0], [0], [0], [w]])
+            for place, decimal in enumerate(row):
+                gap = abs(end[place, 0].real - arb(decimal))
+                assert gap <= arb("0.51e-9") * abs(arb(decimal)) + arb("1e-50")
+
+
+def _ball(value: Fraction) -> arb:
+    return ball_of(SurdSum.rational(value))
