@@ -38,7 +38,8 @@ class Setting:
     `put` puts the equations of the case into an element, `vanishes` says whether an element
     is zero where the relation of the case holds.  `exponential` is that of the stacked
     matrix, `factors` are the irreducible ones of its characteristic polynomial.  `names` are
-    those with a meaning in the formulas, without the time.
+    those with a meaning in the formulas, without the time.  `driven_by` are the waves of all
+    inputs as stated, those that repeat too, which `model` is without.
     """
 
     model: DrivenModel
@@ -49,6 +50,7 @@ class Setting:
     vanishes: Vanishes
     grounds: tuple[Ground, ...]
     names: frozenset[str]
+    driven_by: tuple[Wave, ...]
 
     @property
     def field(self) -> BaseField:
@@ -174,15 +176,7 @@ class Setting:
         for burst in self.model.inputs[place].signal.bursts:
             begun = burst.start is None or burst.start in before
             if begun and (burst.end is None or burst.end not in before):
-                for w in burst.waves:
-                    yield Wave(
-                        self.put(w.amount),
-                        w.power,
-                        self.put(w.rate),
-                        w.kernel,
-                        self.put(w.frequency),
-                        self.put(w.origin),
-                    )
+                yield from (_in_case(wave, self.put) for wave in burst.waves)
 
     def blow(self, k: int) -> FieldMatrix:
         """Return B · the amounts of the impulses at an instant of the timeline, n x 1."""
@@ -278,6 +272,7 @@ def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:
     if points is not None:
         model = replace(model, initial=points.found.initial_in_field)
     names = frozenset() if points is None else frozenset(c.name for c in points.constants)
+    waves = [w for i in response.model.inputs for burst in i.signal.bursts for w in burst.waves]
     if not isinstance(stacked, ParametricResponse):
         values = NamedValues(stacked.closed_forms.constants)
         return Setting(
@@ -289,19 +284,36 @@ def setting_of(response: DrivenResponse, solution: DrivenSolution) -> Setting:
             is_zero_element,
             (Ground(model.field, "", values.balls),),
             names | frozenset(c.name for c in stacked.closed_forms.constants),
+            tuple(waves),
         )
     if case is None:
         raise ValueError("a solution with parameters belongs to a case")
     field, branch = stacked.model.field, case.branch
+
+    def put(element: Scalar) -> Scalar:
+        return field.substituted(element, branch.values)
+
     return Setting(
         model,
         solution,
         branch.exponential,
         tuple(term.factor.p for term in branch.exponential.terms),
-        lambda element: field.substituted(element, branch.values),
+        put,
         lambda element: vanishes_on(branch, element),
         _where_provided(grounds_of(stacked, case, POINTS * (2 if points else 1)), solution),
         names | frozenset({*field.parameters, *(q.name for q in case.quantities)}),
+        tuple(_in_case(wave, put) for wave in waves),
+    )
+
+
+def _in_case(wave: Wave, put: Callable[[Scalar], Scalar]) -> Wave:
+    return Wave(
+        put(wave.amount),
+        wave.power,
+        put(wave.rate),
+        wave.kernel,
+        put(wave.frequency),
+        put(wave.origin),
     )
 
 

@@ -106,3 +106,20 @@ def test_one_period_is_proved_like_any_solution(kind: str) -> None:
     wrong = replace(functions, single=single)
     found = refuted(with_solution(response, periods=(wrong,)))
     assert {item for item in found if item.startswith("one period: ")}
+
+
+@pytest.mark.parametrize("equations", [["x' + x = u - y", "y' = q"], ["x' = u + q", "y' = x"]])
+@pytest.mark.parametrize("count", [None, 2])
+def test_exponents_of_an_input_beside_those_that_repeat_are_proved(
+    equations: list[str], count: int | None
+) -> None:
+    repeated = {"pieces": [{"from": "0", "to": "1", "is": "2*t"}], "period": "3"}
+    mapping = {
+        "equations": equations,
+        "inputs": {
+            "u": "exp(-t)",
+            "q": repeated if count is None else {**repeated, "count": count},
+        },
+        "initial": {"x": 1, "y": 1},
+    }
+    assert refuted(respond_driven(stated(mapping))) == {}
