@@ -61,7 +61,7 @@ KINDS: dict[str, dict[str, Any]] = {
         "parameters": dict.fromkeys(("a", "b", "c"), "positive"),
         "inputs": {"u": "exp(-c*t) + delta(t - 2)"},
         "initial": {"x1": 1, "x2": 0},
-        "outputs": {"rate": "a*x1 + u"},
+        "outputs": {"rate": "a*x1 - b*x2"},
     },
 }
 """Typed equations with a delay, an eliminated unknown and outputs; a wave at an eigenvalue;

@@ -71,7 +71,7 @@ def models(draw: st.DrawFn) -> dict[str, Any]:
         "inputs": inputs,
         "initial": [draw(SMALL) for _ in range(n)],
         "start": draw(st.sampled_from(["0", "0", "1/2"])),
-        "outputs": {"y": f"x1 - 2*x{n} + u1"},
+        "outputs": {"y": f"x1 - 2*x{n}" + ("" if "delta" in inputs["u1"] else " + u1")},
     }
 
 
@@ -115,7 +115,7 @@ def open_models(draw: st.DrawFn) -> dict[str, Any]:
     initial: dict[str, Any] = {"x": "x0"}
     initial |= {"x'": 0} if "x''" in equations[0] else {}
     initial |= {"y": 1} if len(equations) > 1 and "y" in equations[1] else {}
-    blow = draw(st.booleans()) and "T" in names
+    blow = draw(st.booleans()) and "T" in names and "z" not in equations[-1]
     return {
         "equations": equations,
         "parameters": names,
