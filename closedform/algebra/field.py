@@ -9,7 +9,7 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
-from functools import cached_property
+from functools import cached_property, lru_cache
 from math import gcd
 from typing import Any
 
@@ -169,10 +169,7 @@ class BaseField:
         pi and square roots in the field the number 1 has many forms, and SymPy's own inverse
         knows one of them.
         """
-        cofactor, left = q.rem(p).half_gcdex(p)
-        if left.degree():
-            raise ZeroDivisionError(f"{q} has no inverse modulo {p}")
-        return cofactor * (self.domain.one / left.nth(0))
+        return _inverse_modulo(self, p, q)
 
     def matrix(self, rows: Sequence[Sequence[Scalar]]) -> FieldMatrix:
         """Return the dense matrix with these rows (at least one row and column)."""
@@ -216,3 +213,11 @@ def _free_of(a: int, b: int) -> int:
 def rational(element: Scalar) -> Fraction:
     """Return a rational scalar, of whichever number type SymPy was set up with."""
     return Fraction(int(element.numerator), int(element.denominator))
+
+
+@lru_cache(maxsize=256)
+def _inverse_modulo(field: BaseField, p: Polynomial, q: Polynomial) -> Polynomial:
+    cofactor, left = q.rem(p).half_gcdex(p)
+    if left.degree():
+        raise ZeroDivisionError(f"{q} has no inverse modulo {p}")
+    return cofactor * (field.domain.one / left.nth(0))

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import Literal
@@ -127,6 +127,11 @@ class NameBook:
             spelling = next(s for s in _spellings(stem, number) if printed_key(s) not in taken)
             self._constants[definition] = NamedConstant(spelling, definition)
         return self._constants[definition].name
+
+    @classmethod
+    def of(cls, taken: frozenset[str], constants: Iterable[NamedConstant]) -> NameBook:
+        """Return a book in which these names are given already."""
+        return cls(taken, {constant.definition: constant for constant in constants})
 
     def constants(self) -> tuple[NamedConstant, ...]:
         """Return everything named so far, in the order of naming."""

@@ -31,7 +31,7 @@ from closedform.response.closed_form import closed_form, fronted_matrix
 from closedform.response.modes import Contribution, Mode, contributions, modes_of
 from closedform.response.names import NameBook, NamedConstant, Radical, ResiduePart
 
-__all__ = ["LARGEST_WRITTEN_OUT", "ClosedForms", "Response", "respond"]
+__all__ = ["LARGEST_WRITTEN_OUT", "ClosedForms", "Response", "respond", "written_beside"]
 
 LARGEST_WRITTEN_OUT = 8
 """Up to this many states e^(At) is written entry by entry; beyond, by its spectral form."""
@@ -208,7 +208,7 @@ def written_out(response: Response) -> ClosedForms:
 def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     """Names are given in the order of printing: roots, solution, outputs, g, e^(At)."""
     model, factors = response.model, response.spectrum.factors
-    book = NameBook(frozenset({*model.states, *(o.name for o in model.outputs), model.time}))
+    book = NameBook(_taken(model))
     first = accumulate((f.degree for f in factors), initial=1)
     modes = tuple(
         modes_of(f, book, first=number, name_surds=name_surds)
@@ -216,11 +216,7 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     )
 
     def parts(function: ExponentialMatrix, row: int, column: int) -> list[Contribution]:
-        return [
-            contribution
-            for modes_of_factor, term in zip(modes, function.terms, strict=True)
-            for contribution in contributions(modes_of_factor, term, row, column, book)
-        ]
+        return _parts(modes, function, row, column, book)
 
     def column(function: ExponentialMatrix | None) -> tuple[Expression, ...]:
         if function is None:
@@ -264,6 +260,41 @@ def _written(response: Response, *, name_surds: bool) -> ClosedForms:
     return ClosedForms(
         modes, solution, outputs, transition, fronted, impulses, book.constants(), further, by_mode
     )
+
+
+def written_beside(
+    response: Response, function: ExponentialMatrix
+) -> tuple[tuple[Expression, ...], ...] | None:
+    """Return the formulas of another function, with the names that a response has for its own.
+
+    None if they need more.
+    """
+    model, forms = response.model, response.closed_forms
+    book = NameBook.of(_taken(model), forms.constants)
+    rows, columns = map(range, function.shape)
+    found = tuple(
+        tuple(closed_form(_parts(forms.modes, function, i, k, book), model.time) for k in columns)
+        for i in rows
+    )
+    return found if book.constants() == forms.constants else None
+
+
+def _taken(model: Model) -> frozenset[str]:
+    return frozenset({*model.states, *(o.name for o in model.outputs), model.time})
+
+
+def _parts(
+    modes: Sequence[tuple[Mode, ...]],
+    function: ExponentialMatrix,
+    row: int,
+    column: int,
+    book: NameBook,
+) -> list[Contribution]:
+    return [
+        contribution
+        for modes_of_factor, term in zip(modes, function.terms, strict=True)
+        for contribution in contributions(modes_of_factor, term, row, column, book)
+    ]
 
 
 def _by_mode(contributions: Sequence[Contribution]) -> tuple[ModePart, ...]:

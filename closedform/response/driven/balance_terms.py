@@ -3,17 +3,18 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 from closedform.algebra.exponential import ExponentialMatrix, ModalTerm
 from closedform.algebra.field import Scalar
 from closedform.model.driven.model import DrivenModel, Jet
-from closedform.notation.expression import Expression, names_in
+from closedform.notation.expression import Expression
 from closedform.response.driven.composition import interval_formula
 from closedform.response.driven.functions import Interval
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.parametric.response import ParametricResponse
-from closedform.response.parametric.writing import formulas_beside
+from closedform.response.parametric.writing import written_beside_case
+from closedform.response.response import written_beside
 
 __all__ = ["BalanceTerm", "balance_terms", "derived"]
 
@@ -106,12 +107,5 @@ def _written(
     if isinstance(stacked, ParametricResponse):
         if solution.case is None:
             return None
-        return formulas_beside(stacked.model, solution.case, function)
-    forms = replace(stacked, further=function, parted=None).closed_forms
-    known = {constant.name: constant for constant in stacked.closed_forms.constants}
-    if any(known.get(c.name, c) != c for c in forms.constants):
-        return None
-    used = {name for row in forms.further for formula in row for name in names_in(formula)}
-    if not used <= {stacked.model.time, *known}:
-        return None
-    return forms.further
+        return written_beside_case(stacked.model, solution.case, function)
+    return written_beside(stacked, function)

@@ -30,7 +30,7 @@ from closedform.response.parametric.rewriting import (
 from closedform.response.parametric.selection import case_conditions
 from closedform.response.parametric.terms import Term
 
-__all__ = ["formulas_beside", "written_case"]
+__all__ = ["written_beside_case", "written_case"]
 
 T = TypeVar("T")
 Table = tuple[tuple[T, ...], ...]
@@ -112,7 +112,7 @@ def written_case(
     )
 
 
-def formulas_beside(
+def written_beside_case(
     model: ParametricModel, case: Case, function: ExponentialMatrix
 ) -> Table[Expression] | None:
     """Return the formulas of another function, written as those of a case are.
