@@ -317,14 +317,13 @@ def _apart_from_known(
 
 
 def _has_root(expression: Expression) -> bool:
-    return isinstance(expression, Call) or (
-        isinstance(expression, Quotient | Product | Sum) and any(map(_has_root, _parts(expression)))
-    )
-
-
-def _parts(expression: Quotient | Product | Sum) -> tuple[Expression, ...]:
     match expression:
-        case Quotient(above, below):
-            return (above, below)
-        case Product(several) | Sum(several):
-            return several
+        case Call():
+            return True
+        case Negation(inside):
+            return _has_root(inside)
+        case Sum(several) | Product(several):
+            return any(map(_has_root, several))
+        case Quotient(left, right) | Power(left, right):
+            return _has_root(left) or _has_root(right)
+    return False

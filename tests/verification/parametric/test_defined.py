@@ -14,6 +14,7 @@ from closedform.verification.parametric.defined import (
 )
 from closedform.verification.record import Check
 from tests.rational_elements import field_of
+from tests.response.parametric import solved
 from tests.verification.parametric.spoiling import KINDS, response_to, with_case, with_formula
 
 
@@ -115,3 +116,9 @@ def test_a_name_in_a_formula_needs_a_definition() -> None:
     other = with_formula(response, 0, ("solution", 0), read_formula("q*t", names=frozenset("qt")))
     assert undefined_name(other, other.cases[0]) == "q"
     assert defined_check(other, other.cases[0]).how == "q has no definition"
+
+
+def test_roots_under_a_root_and_under_a_sign_are_no_rational_squares() -> None:
+    response = solved.response_to("masses")
+    (case,) = response.cases
+    assert defined_check(response, case).outcome == "proved"
