@@ -11,7 +11,7 @@ from fractions import Fraction
 from typing import Any
 
 import mpmath
-from flint import arb, arb_series
+from flint import arb, arb_series, ctx
 
 from tests.driven.series import constant, derivatives, moving, series
 from tests.driven.typed import Stated
@@ -39,6 +39,8 @@ def reached(
             for j, place in enumerate(highest):
                 mass[i, j] = _mpf(line.of_unknowns.get(place, Fraction(0)))
 
+        solving = mass**-1
+
         def top(t: Any, known: Mapping[Jet, Any]) -> dict[Jet, Any]:
             right = mpmath.matrix(len(stated.lines), 1)
             for i, line in enumerate(stated.lines):
@@ -47,7 +49,7 @@ def reached(
                     if place in known:
                         total -= _mpf(weight) * known[place]
                 right[i] = total
-            solved = mpmath.lu_solve(mass, right)
+            solved = solving * right
             return {place: solved[j] for j, place in enumerate(highest)}
 
         def slopes(t: Any, x: Any) -> list[Any]:
@@ -63,14 +65,20 @@ def reached(
 
 
 def _forcing(stated: Stated, i: int, t: arb) -> Any:
-    """What inputs and functions of the time add to the left of an equation."""
+    """What inputs and functions of the time add to the left of an equation.
+
+    Taylor's method takes differences, for which it raises the precision many times.
+    """
     line = stated.lines[i]
-    total = arb(0)
-    for (name, order, delay), weight in line.of_inputs.items():
-        own = stated.input_series(name, t - ball_of(delay))
-        total += ball_of(weight) * derivatives(own, order + 1)[order]
-    near = {name: constant(number) for name, number in stated.values.items()}
-    return _mpf(total + series(line.rest, {**near, stated.time: moving(t)})[0])
+    with ctx.workprec(mpmath.mp.prec + 30):
+        total = arb(0)
+        for (name, order, delay), weight in line.of_inputs.items():
+            own = stated.input_series(name, t - ball_of(delay))
+            total += ball_of(weight) * derivatives(own, order + 1)[order]
+        near = {name: constant(number) for name, number in stated.values.items()}
+        total += series(line.rest, {**near, stated.time: moving(t)})[0]
+        mantissa, exponent = total.mid().man_exp()
+        return mpmath.ldexp(mpmath.mpf(int(mantissa)), int(exponent))
 
 
 def _mpf(number: Number) -> Any:
