@@ -70,6 +70,11 @@ class ResiduePart:
     weight: Fraction
     part: Part
 
+    def __hash__(self) -> int:
+        """Hash what tells most apart: large fractions take long, and there are many."""
+        numerator = self.numerator
+        return hash((self.which, self.part, numerator.degree(), numerator.nth(0), numerator.nth(1)))
+
     def enclosure(self) -> arb:
         """Return a ball for the number at FLINT's current precision."""
         value = residue_value(self.base, self.polynomial, self.which, self.numerator)
