@@ -12,6 +12,8 @@ from dataclasses import dataclass
 from functools import reduce
 from operator import add
 
+from sympy.polys.domains import QQ
+
 from closedform.algebra.field import BaseField, FieldMatrix, Polynomial, Scalar
 
 __all__ = [
@@ -21,6 +23,9 @@ __all__ = [
     "series_product",
     "taylor_at_root",
 ]
+
+_FEW = 6
+"""Beyond this degree over Q a product with an element of L is made as one of matrices."""
 
 
 def coefficients_low_first(polynomial: Polynomial, length: int) -> list[Scalar]:
@@ -116,12 +121,30 @@ class RootMatrix:
         if factor.degree() <= 0:
             c = factor.nth(0)
             return RootMatrix(self.field, self.modulus, tuple(m * c for m in self.coefficients))
+        if d > _FEW and self.field.domain == QQ:
+            return self._scaled_at_once(factor)
         work = [self.field.zeros(*self.shape)] * (2 * d - 1)
         for i, c in enumerate(coefficients_low_first(factor.rem(self.modulus), d)):
             if c:
                 for k, m in enumerate(self.coefficients):
                     work[i + k] = work[i + k] + m * c
         return RootMatrix.reduced(self.field, self.modulus, work)
+
+    def _scaled_at_once(self, factor: Polynomial) -> RootMatrix:
+        """The same as one product of matrices, which FLINT makes with whole numbers."""
+        field, (rows, columns), d = self.field, self.shape, len(self.coefficients)
+        multiples, power = [], factor.rem(self.modulus)
+        root = field.polynomial([field.domain.one, field.domain.zero])
+        for _ in range(d):
+            multiples.append(coefficients_low_first(power, d))
+            power = (power * root).rem(self.modulus)
+        entries = [[e for row in m.to_list() for e in row] for m in self.coefficients]
+        product = (field.matrix(multiples).transpose() * field.matrix(entries)).to_list()
+        made = [
+            field.matrix([flat[i : i + columns] for i in range(0, rows * columns, columns)])
+            for flat in product
+        ]
+        return RootMatrix(field, self.modulus, tuple(made))
 
     def shifted(self, matrix: FieldMatrix) -> RootMatrix:
         """Return (matrix - lambda I) · M(lambda) for a square matrix over K."""

@@ -189,3 +189,26 @@ def test_the_inverse_of_a_root_over_surds() -> None:
     lam = RootMatrix(field, p, (field.zeros(1, 1), field.identity(1)))
     inverse = lam.scaled(field.polynomial([root2 / (one + one)]))
     assert (lam @ inverse - RootMatrix.constant(field, p, field.identity(1))).is_zero
+
+
+@given(
+    st.lists(st.integers(-4, 4), min_size=7, max_size=11),
+    st.lists(st.fractions(-3, 3, max_denominator=5), min_size=2, max_size=14),
+    st.integers(0, 2**20),
+)
+def test_products_modulo_large_polynomials(
+    lower: list[int], factor: list[Fraction], seed: int
+) -> None:
+    p = plain((1, *lower))
+    modulus = over_q((1, *lower))
+    d = len(lower)
+    rows = [
+        [fmpq_poly([(seed >> (i + k + e)) % 7 - 3 for e in range(d)]) for k in range(2)]
+        for i in range(3)
+    ]
+    g = fmpq_poly([fmpq(c.numerator, c.denominator) for c in factor])
+    made = root_matrix((1, *lower), rows).scaled(Q.polynomial([Q.scalar(c) for c in factor[::-1]]))
+    assert made.modulus == modulus
+    for i, row in enumerate(rows):
+        for k, entry in enumerate(row):
+            assert as_plain(made.entry(i, k)) == entry * g % p

@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from fractions import Fraction
+from functools import lru_cache
 from random import Random
 
 from closedform.algebra.branches import Branch, Exceptional
@@ -209,8 +210,7 @@ def _is_true(
     """Decide a comparison from its text.  Where a side is not defined it does not hold."""
     sides = []
     for side in (comparison.left, comparison.right):
-        read = read_formula(plain(side), names=frozenset(field.parameters))
-        element = rational_value(read, field, Place())
+        element = _read_back(field, plain(side))
         try:
             sides.append(field.substituted(element, values))
         except ZeroDivisionError:
@@ -224,3 +224,9 @@ def _is_true(
         "!=": sign != 0,
         "==": sign == 0,
     }[comparison.sign]
+
+
+@lru_cache(maxsize=1024)
+def _read_back(field: ParameterField, text: str) -> Scalar:
+    """What a text says, which is asked at many points."""
+    return rational_value(read_formula(text, names=frozenset(field.parameters)), field, Place())
