@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from closedform.derivation.step import Matrix, Statement
-from closedform.document.display import RELATIONS, Display, displayed_together
+from closedform.document.display import AS_GIVEN, RELATIONS, Display, displayed_together
 from closedform.document.matrices import with_front
 from closedform.document.symbols import side_box
 from closedform.notation.latex.box import EM_PER_LINE, RELATION, Box
@@ -38,7 +38,7 @@ def displayed_beside(statements: Sequence[Statement]) -> list[Display]:
 
 def _box(statement: Statement) -> Box:
     sides = [with_front(s) if isinstance(s, Matrix) else s for s in statement.sides]
-    if statement.says in ("matrix", "initial", "branch matrix"):
+    if statement.says in AS_GIVEN or statement.says == "branch matrix":
         sides = list(statement.sides)
     boxes = [side_box(side) for side in sides]
     relation = RELATIONS.get(statement.relation)

@@ -18,7 +18,7 @@ from closedform.document.symbols import ANY_ROW, side_box
 from closedform.notation.expression import Expression, Product
 from closedform.notation.latex.box import EM_PER_LINE, RELATION, Box
 
-__all__ = ["RELATIONS", "Display", "displayed", "displayed_together", "fits", "narrow"]
+__all__ = ["AS_GIVEN", "RELATIONS", "Display", "displayed", "displayed_together", "fits", "narrow"]
 
 WIDEST_LEFT_SIDE = 12.0
 """A left side up to this width, in em, keeps the lines below it indented past it."""

@@ -8,7 +8,7 @@ from closedform.derivation.step import Symbol
 from closedform.notation.expression import Expression, Name, Negation, Number, Quotient, Sum
 from closedform.notation.latex.box import BINARY, Box, Style, bracketed, joined, plain
 from closedform.notation.latex.formula import formula
-from closedform.notation.latex.names import letter_box, name_box, subscripted
+from closedform.notation.latex.names import derivative_box, letter_box, name_box, subscripted
 
 __all__ = [
     "adjugate",
@@ -20,6 +20,7 @@ __all__ = [
     "exponential",
     "inverse",
     "lettered",
+    "one_sided",
     "raised",
     "resolvent",
     "scalar",
@@ -126,16 +127,24 @@ def adjugate(symbol: Symbol) -> Box:
 
 
 def dotted(symbol: Symbol) -> Box:
-    """Return a vector with dots: its derivatives with respect to the time."""
-    order = max(symbol.order, 1)
+    """Return a vector with dots, or primes: its derivatives with respect to the time."""
     body = lettering(symbol.letter or "x", Style.DISPLAY)
-    dots = Box(rf"\{'d' * order}ot{{{body.latex}}}", body.width, body.height)
-    return applied(subscripted(dots, symbol.indices, Style.DISPLAY), symbol.argument)
+    box = derivative_box(body, symbol.indices, max(symbol.order, 1), Style.DISPLAY)
+    return applied(box, symbol.argument)
 
 
 def step(symbol: Symbol) -> Box:
     """Return the unit step."""
     return applied(plain(r"\varepsilon", 0.52), symbol.argument)
+
+
+def one_sided(symbol: Symbol) -> Box:
+    """Return the limit of a function at an instant from one side."""
+    at = formula(symbol.argument or Name("t"))
+    if not isinstance(symbol.argument, Name | Number):
+        at = bracketed(at)
+    limit = Box(f"{at.latex}^{{{symbol.indices[0]}}}", at.width + 0.7, at.height)
+    return joined(name_box(symbol.letter), bracketed(limit))
 
 
 def turn(symbol: Symbol) -> Box:

@@ -16,6 +16,7 @@ from closedform.document.phrases import FILTERS, FUNCTIONS, stacked_symbol
 from closedform.document.references import References
 from closedform.errors import InputError
 from closedform.notation.expression import Name
+from closedform.notation.latex.names import derivatives_of, is_time
 
 if TYPE_CHECKING:
     from jinja2 import BaseLoader, Environment
@@ -118,7 +119,7 @@ def render(
     if depth not in DEPTHS:
         raise UnknownDepthError(depth)
 
-    references = References()
+    time, references = _time(derivation), References()
     environment = _environment(_loader(str(template)), references)
     shown = DEPTHS[: DEPTHS.index(depth) + 1]
     steps = [step for step in derivation.steps if step.depth in shown]
@@ -128,7 +129,8 @@ def render(
         "steps": steps,
         "depth": depth,
         "shown": frozenset(step.kind for step in steps),
-        "time": _time(derivation),
+        "time": time,
+        "in_time": is_time(time.text),
         "form": Symbol("matrix", ("R",) if "real_form" in kinds else (), letter="J"),
         "foot": _shortened(derivation.title),
     }
@@ -142,7 +144,8 @@ def render(
         references.next_pass()
         return main.render(values)
 
-    return _answered(template, twice)
+    with derivatives_of(time.text):
+        return _answered(template, twice)
 
 
 def _answered(template: str | Path, work: Callable[[], _T]) -> _T:

@@ -32,6 +32,7 @@ italic.  In kinds with an argument and a default of t, leave `argument` out for 
     time derivative            argument [t]                        d/dt
     dotted                     letter [x] indices argument order   x with a dot
     step                       argument                            epsilon(t - a)
+    one-sided                  letter argument indices: - or +     x(a^-),  x(a^+)
     blocks                     indices: number of columns; parts   [A, B; 0, W]
     interval                   indices: both, from, until or       a <= t < b
                                otherwise; argument [t]; parts
@@ -62,6 +63,7 @@ from closedform.document.letters import (
     exponential,
     inverse,
     lettered,
+    one_sided,
     raised,
     resolvent,
     scalar,
@@ -328,6 +330,7 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "time derivative": time_derivative,
     "dotted": dotted,
     "step": step,
+    "one-sided": one_sided,
     "blocks": _blocks,
     "interval": _interval,
     "cases": _cases,

@@ -122,3 +122,27 @@ def test_a_small_model_takes_few_pages(pdflatex: str, tmp_path: Path) -> None:
     pages = re.search(r"\((\d+) pages", log)
     assert pages is not None
     assert int(pages[1]) <= 5
+
+
+def test_derivatives_with_respect_to_another_variable_have_primes() -> None:
+    text = text_of("string held at both ends")
+    assert r"\ddot{y}" in text
+    along = text_of("string along an axis")
+    assert "y'' + w^{2}y = 0" in along
+    assert r"\dot" not in along
+    assert "Long-term behaviour" not in along
+
+
+def test_what_was_proved_is_named_and_told_in_full() -> None:
+    assert r"\emph{Proved} by putting the solution back" in text_of("mount")
+    assert "Substituted, and what came out" not in text_of("mount")
+    assert "Substituted, and what came out" in text_of("mount", "full")
+
+
+def test_the_joins_are_told_and_shown_in_full() -> None:
+    assert "the pieces on both sides give the same state" in text_of("source switched off")
+    assert r"v_{\mathrm{C}}(T_{1}^{-})" in text_of("source switched off", "full")
+
+
+def test_a_sine_gives_a_steady_sine() -> None:
+    assert r"\sin(3t - \varphi_{1})" in text_of("frame")

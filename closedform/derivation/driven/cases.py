@@ -147,7 +147,8 @@ def _steps(
         if definitions is not None:
             yield definitions
         if branch.number == 0:
-            yield cases_step(stacked)
+            cases_told = cases_step(stacked)
+            yield replace(cases_told, facts={**cases_told.facts, "brief": True})
         solutions = [response.solutions[case.number] for case in cases]
         results = list(_results(response, solutions, len(stacked.cases)))
         if branch.number == 0:

@@ -39,6 +39,7 @@ def resonance_step(
             "raised": found.raised,
             "damped": found.damped,
             "pair": bool(found.tone.frequency),
+            "constant": not found.tone.frequency and not found.tone.rate,
         }
         for found in solution.resonances
     ]
@@ -68,6 +69,7 @@ def stability_step(writing: Writing, solution: DrivenSolution, facts: dict[str, 
         "rows": [_test_row(writing, test) for test in stability.reasons],
         "second": all(len(test.polynomial) <= 3 for test in stability.factors),
         "marginal": stability.marginal,
+        "scalar": writing.is_scalar,
     }
     return Step("stability", (statement,), told, ("driven_solution",))
 

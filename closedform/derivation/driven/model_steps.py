@@ -54,6 +54,9 @@ def driven_model_step(writing: Writing) -> Step:
         "inputs": [_told(writing, given) for _, given in declared],
         "as_typed": any(_has_steps(side) for s in statements for side in s.sides),
         "numbers": model.domain is None,
+        "struck": any(
+            impulse.at == model.start for g in model.inputs for impulse in g.signal.impulses
+        ),
         "impulses": any(given.signal.impulses for given in model.inputs),
         "start": writing.element(model.start),
         "later": bool(model.start),

@@ -10,6 +10,7 @@ from closedform.derivation.driven.closing_steps import (
     steady_step,
     transient_step,
 )
+from closedform.derivation.driven.join_steps import joins_step
 from closedform.derivation.driven.periodic_steps import periodic_steps
 from closedform.derivation.driven.solution_steps import (
     driven_solution_step,
@@ -17,7 +18,7 @@ from closedform.derivation.driven.solution_steps import (
     particular_step,
     split_step,
 )
-from closedform.derivation.driven.substitution_steps import substitution_step
+from closedform.derivation.driven.substitution_steps import substitution_steps
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.step import Step
 from closedform.response.driven.response import DrivenResponse
@@ -50,7 +51,8 @@ def _steps(
     if not solution.periodic:
         yield steady_step(writing, solution, facts)
         yield transient_step(writing, solution, facts)
-        yield substitution_step(response, solution, facts)
+        yield from substitution_steps(response, solution, facts)
+        yield joins_step(writing, solution, facts)
 
 
 def _moves(solution: DrivenSolution) -> bool:

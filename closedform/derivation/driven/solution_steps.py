@@ -18,6 +18,7 @@ from closedform.response.driven.composition import constant_formula, step_formul
 from closedform.response.driven.response import DrivenSolution
 
 __all__ = [
+    "blow_at",
     "case_facts",
     "driven_solution_step",
     "driven_transition_step",
@@ -136,7 +137,7 @@ def jumps_step(writing: Writing, solution: DrivenSolution, facts: dict[str, obje
             given = [[_put(solution, value)] for value in model.initial]
             first = (UNIT(model.field), model.field.matrix(given))
             jump = gathered_columns([first, *jump])  # noqa: PLW2901  the start has more parts
-        blow = _blow(writing, solution, k)
+        blow = blow_at(writing, solution, k)
         if k == 0 and model.initial is None and blow is None:
             continue
         column = list(_column(writing, jump))
@@ -162,6 +163,7 @@ def jumps_step(writing: Writing, solution: DrivenSolution, facts: dict[str, obje
         "points": model.initial is None,
         "driven": any(p.summands for p in functions.sustained),
         "apart": bool(solution.periodic),
+        "scalar": writing.is_scalar,
     }
     shape = _shape(writing, solution, rows)
     return Step("jumps", (shape,), told, ("particular",))
@@ -188,8 +190,8 @@ def _column(writing: Writing, parts: ConstantColumns) -> Iterator[Expression]:
         yield opened(sum_of(terms)) if terms else ZERO
 
 
-def _blow(writing: Writing, solution: DrivenSolution, place: int) -> Statement | None:
-    """What the impulses at an instant add to the state."""
+def blow_at(writing: Writing, solution: DrivenSolution, place: int) -> Statement | None:
+    """Return what the impulses at an instant add to the state; None where none strikes."""
     model = writing.model
     matrix = model.reduction.input_matrix
     at = (model.start, *model.timeline)[place]

@@ -2,26 +2,24 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 
 from closedform.algebra.field import Scalar
+from closedform.derivation.driven.differentiation import derivative_of, times
 from closedform.derivation.driven.signals import waves_formula, waves_in
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.step import Depth, Statement, Step
-from closedform.model.driven.model import Jet
-from closedform.notation.expression import ZERO, Expression, Name, operations
-from closedform.response.driven.balance_terms import BalanceTerm, balance_terms
+from closedform.model.driven.model import DrivenModel, Jet
+from closedform.notation.expression import ZERO, Expression, Name
+from closedform.response.driven.balance_terms import balance_terms
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 
-__all__ = ["substitution_step"]
-
-LONGEST = 120
-"""Operations in the terms up to which they are printed at the depth working."""
+__all__ = ["Stated", "best_equation", "stated_equations", "substitution_steps", "term_of"]
 
 
 @dataclass(frozen=True)
-class _Equation:
+class Stated:
     """sum of weight · jet = sum of weight · input; `number` counts the typed ones from 1."""
 
     number: int
@@ -29,44 +27,100 @@ class _Equation:
     of_inputs: tuple[tuple[int, Scalar], ...]
 
 
-def substitution_step(
+def substitution_steps(
     response: DrivenResponse, solution: DrivenSolution, facts: dict[str, object]
-) -> Step | None:
-    """Show what each term of one equation is in one interval, and that they add up.
+) -> Iterator[Step]:
+    """Show what each term of an equation is in one interval, and that they add up.
 
-    None if the terms cannot be written with the names of the solution.
+    The most telling equation comes first; the others are for full documents.
     """
     writing = Writing(response.model)
-    equations = _equations(writing)
-    chosen = max(equations, key=lambda e: (_tops(writing, e), bool(e.of_inputs), -e.number))
-    place = _busiest(writing, chosen)
-    interval = solution.functions.intervals[place]
-    terms = balance_terms(response, solution, chosen.of_unknowns, interval)
-    if terms is None:
-        return None
-    several = len(solution.functions.intervals) > 1
+    equations = stated_equations(writing.model)
+    first = best_equation(writing.model, equations)
+    for equation in (first, *(e for e in equations if e is not first)):
+        depth: Depth = "working" if equation is first else "full"
+        yield _step(response, solution, facts, equation, depth)
+
+
+def best_equation(model: DrivenModel, equations: Sequence[Stated]) -> Stated:
+    """Return the equation that tells most: with a highest derivative, an input, many terms."""
+    return max(
+        equations,
+        key=lambda e: (_tops(model, e), bool(e.of_inputs), len(e.of_unknowns), -e.number),
+    )
+
+
+def _step(
+    response: DrivenResponse,
+    solution: DrivenSolution,
+    facts: dict[str, object],
+    equation: Stated,
+    depth: Depth,
+) -> Step:
+    writing = Writing(response.model)
+    place = _busiest(writing, solution, equation)
     statements = [
-        Statement("term", (_weighted(writing, solution, term), term.formula)) for term in terms
+        Statement("term", (_weighted(writing, solution, jet, weight), formula))
+        for (jet, weight), formula in zip(
+            equation.of_unknowns, _terms(response, solution, equation, place), strict=True
+        )
     ]
-    statements.append(_balance(writing, solution, chosen, terms, place))
+    statements.append(_balance(writing, solution, equation, place))
     told = {
         **facts,
         "place": place,
-        "when": writing.within(place) if several else None,
-        "number": chosen.number,
+        "when": writing.within(place) if len(solution.functions.intervals) > 1 else None,
+        "number": equation.number,
         "typed": bool(writing.model.balances),
-        "several": len(equations) > 1,
+        "several": len(stated_equations(writing.model)) > 1,
     }
-    amount = sum(operations(term.formula) for term in terms)
-    depth: Depth = "working" if amount <= LONGEST else "full"
     return Step("substitution", tuple(statements), told, ("driven_solution",), depth)
 
 
-def _equations(writing: Writing) -> list[_Equation]:
-    model = writing.model
+def _terms(
+    response: DrivenResponse, solution: DrivenSolution, equation: Stated, place: int
+) -> Iterator[Expression]:
+    """The terms in the shortest form; where that needs names of its own, derived one by one."""
+    interval = solution.functions.intervals[place]
+    found = balance_terms(response, solution, equation.of_unknowns, interval)
+    if found is not None:
+        yield from (term.formula for term in found)
+        return
+    writing = Writing(response.model)
+    for jet, weight in equation.of_unknowns:
+        yield term_of(writing, solution, jet, weight, solution.pieces[place], writing.t)
+
+
+def term_of(
+    writing: Writing,
+    solution: DrivenSolution,
+    jet: Jet,
+    weight: Scalar,
+    rows: Sequence[Expression],
+    variable: Name,
+) -> Expression:
+    """Return weight · jet by the formulas of the rows, one of them derived where it has to be."""
+    row, derived = _row_of(writing.model, jet)
+    formula = derivative_of(rows[row], variable.text) if derived else rows[row]
+    put = solution.put(weight)
+    return times([writing.element(put), formula]) if put else ZERO
+
+
+def _row_of(model: DrivenModel, jet: Jet) -> tuple[int, bool]:
+    """The row that a jet is, or that it is the derivative of."""
+    jets = list(model.reduction.jets)
+    if jet in jets:
+        return jets.index(jet), False
+    if jet.order == 0:
+        return len(model.names) + model.reduction.eliminated.index(jet.name), False
+    return jets.index(Jet(jet.name, jet.order - 1)), True
+
+
+def stated_equations(model: DrivenModel) -> list[Stated]:
+    """Return the equations as typed, or the rows of the state form where that was stated."""
     if model.balances:
         return [
-            _Equation(k, b.of_unknowns, tuple((i, -w) for i, w in b.of_inputs))
+            Stated(k, b.of_unknowns, tuple((i, -w) for i, w in b.of_inputs))
             for k, b in enumerate(model.balances, start=1)
         ]
     reduction, one = model.reduction, model.field.domain.one
@@ -77,39 +131,38 @@ def _equations(writing: Writing) -> list[_Equation]:
         others = [(j, -w) for j, w in zip(reduction.jets, row, strict=True) if w]
         fed = tuple((i, w) for i, w in enumerate(feeds[k]) if w) if feeds else ()
         top = (Jet(jet.name, jet.order + 1), one)
-        found.append(_Equation(k + 1, (top, *others), fed))
+        found.append(Stated(k + 1, (top, *others), fed))
     return found
 
 
-def _tops(writing: Writing, equation: _Equation) -> bool:
+def _tops(model: DrivenModel, equation: Stated) -> bool:
     """Whether a highest derivative stands in the equation, which is no state."""
-    jets = writing.model.reduction.jets
+    jets = model.reduction.jets
     return any(jet.order and jet not in jets for jet, _ in equation.of_unknowns)
 
 
-def _busiest(writing: Writing, equation: _Equation) -> int:
-    """The first interval in which an input of the equation is on; else the first of all."""
-    for place in range(len(writing.model.timeline) + 1):
-        if any(waves_in(writing, column, place) for column, _ in equation.of_inputs):
-            return place
-    return 0
+def _busiest(writing: Writing, solution: DrivenSolution, equation: Stated) -> int:
+    """The first interval in which an input of the equation is on; else in which anything moves."""
+    places = range(len(writing.model.timeline) + 1)
+    fed = (
+        place
+        for place in places
+        if any(waves_in(writing, column, place) for column, _ in equation.of_inputs)
+    )
+    moved = (place for place in places if any(row != ZERO for row in solution.pieces[place]))
+    return next(fed, next(moved, 0))
 
 
-def _weighted(writing: Writing, solution: DrivenSolution, term: BalanceTerm) -> Expression:
-    weight = solution.put(term.weight)
-    return writing.term(weight, [Name(term.jet.text)]) if weight else ZERO
+def _weighted(writing: Writing, solution: DrivenSolution, jet: Jet, weight: Scalar) -> Expression:
+    put = solution.put(weight)
+    return writing.term(put, [Name(jet.text)]) if put else ZERO
 
 
-def _balance(
-    writing: Writing,
-    solution: DrivenSolution,
-    equation: _Equation,
-    terms: Sequence[BalanceTerm],
-    place: int,
-) -> Statement:
+def _balance(writing: Writing, solution: DrivenSolution, equation: Stated, place: int) -> Statement:
     """The sum of the terms, by names, is what the inputs are, by name and as a formula."""
+    unknowns = equation.of_unknowns
     left = writing.combination(
-        ([solution.put(t.weight) for t in terms], [Name(t.jet.text) for t in terms])
+        ([solution.put(w) for _, w in unknowns], [Name(jet.text) for jet, _ in unknowns])
     )
     weights = [solution.put(weight) for _, weight in equation.of_inputs]
     labels = [writing.inputs[column] for column, _ in equation.of_inputs]

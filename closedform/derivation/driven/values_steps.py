@@ -38,7 +38,8 @@ def driven_values_step(
         ],
         "digits": digits,
         "chosen": not model.times,
-        "instants": any(switch.jump for switch in functions.switches),
+        "instants": any(switch.jump for switch in functions.switches)
+        or any(i.at == model.start for g in model.inputs for i in g.signal.impulses),
     }
     return Step("driven_values", (), told, ("driven_solution",), "summary")
 

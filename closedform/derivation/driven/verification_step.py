@@ -42,6 +42,11 @@ _WORDS = {
     "two routes": "the resolvent and the canonical form agree",
     "stacked matrix": "the matrix of states and inputs",
     "one case applies": "exactly one case applies",
+    "intervals": "the intervals",
+    "conditions as written": "the conditions of the cases",
+    "sustained by the inputs": "what the inputs sustain",
+    "resonance": "order of resonance",
+    "unit steps and pieces": "unit steps and pieces agree",
 }
 _PERIOD = "one period: "
 _FIRST = ("equations as typed", "x(start) = x0", "joins", "jumps h")

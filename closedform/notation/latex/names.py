@@ -7,11 +7,15 @@ itself a quantity is upright).
 
 Primes, or a last index dot, ddot, dot3, say how often something is derived with respect to
 the time: ``x1''`` and ``x1_ddot`` are \ddot{x}_{1}, from the fourth time on x_{1}^{(4)}.
+Dots mean the time alone (ISO 80000-2): within `derivatives_of` another variable primes are set.
 """
 
 from __future__ import annotations
 
 import re
+from collections.abc import Iterator
+from contextlib import contextmanager
+from contextvars import ContextVar
 from functools import lru_cache
 from typing import NamedTuple
 
@@ -21,9 +25,12 @@ from closedform.notation.latex.escape import escaped
 __all__ = [
     "GREEK",
     "IMAGINARY",
+    "derivative_box",
+    "derivatives_of",
     "dot_ending",
     "is_long",
     "is_raised",
+    "is_time",
     "letter_box",
     "name_box",
     "printed_key",
@@ -63,6 +70,8 @@ NAME = re.compile(
 )
 DOTS = (r"\dot", r"\ddot", r"\dddot")
 """Accents of the first derivatives with respect to the time; later ones have a number."""
+TIMES = frozenset({"t", "tau", "time"})
+_primes: ContextVar[bool] = ContextVar("primes", default=False)
 
 
 def _width(word: str) -> float:
@@ -146,10 +155,42 @@ def dot_ending(order: int) -> str:
     return ("", "_dot", "_ddot")[order] if order < 3 else f"_dot{order}"
 
 
+def is_time(variable: str) -> bool:
+    """Say whether a variable goes by a name of the time: t, tau, t_1.
+
+    >>> is_time("tau"), is_time("z")
+    (True, False)
+    """
+    return printed_key(variable).split("_")[0] in TIMES
+
+
+@contextmanager
+def derivatives_of(variable: str) -> Iterator[None]:
+    """Set derivatives with respect to a variable: with dots for a time, else with primes."""
+    before = _primes.set(not is_time(variable))
+    try:
+        yield
+    finally:
+        _primes.reset(before)
+
+
+def derivative_box(body: Box, indices: tuple[str, ...], order: int, style: Style) -> Box:
+    """Return a letter with dots or primes, or with its order in brackets, and with indices."""
+    if 0 < order <= len(DOTS) and not _primes.get():
+        dotted = Box(f"{DOTS[order - 1]}{{{body.latex}}}", body.width, body.height)
+        return subscripted(dotted, indices, style)
+    box = subscripted(body, indices, style)
+    if order <= len(DOTS):
+        return Box(box.latex + "'" * order, box.width + 0.3 * order * style.scale, box.height)
+    raised = 0.8 + 0.52 * len(str(order))
+    width = box.width + raised * style.script.scale
+    return Box(f"{box.latex}^{{({order})}}", width, box.height)
+
+
 def is_raised(text: str) -> bool:
-    """Say whether a name is printed with something above it on the right: x^{(4)}."""
+    """Say whether a name is printed with something above it on the right: x^{(4)}, y'."""
     parts = _parts(text)
-    return parts is not None and parts.order > len(DOTS)
+    return parts is not None and parts.order > (0 if _primes.get() else len(DOTS))
 
 
 def is_long(text: str) -> bool:
@@ -171,12 +212,5 @@ def name_box(text: str, style: Style = Style.DISPLAY, extra: tuple[str, ...] = (
     parts = _parts(text)
     if parts is None:
         return subscripted(letter_box(text, style), extra, style)
-    box = letter_box(parts.base, style)
-    if 0 < parts.order <= len(DOTS):
-        box = Box(f"{DOTS[parts.order - 1]}{{{box.latex}}}", box.width, box.height)
-    box = subscripted(box, (*parts.indices, *filter(None, extra)), style)
-    if parts.order <= len(DOTS):
-        return box
-    raised = 0.8 + 0.52 * len(str(parts.order))
-    width = box.width + raised * style.script.scale
-    return Box(f"{box.latex}^{{({parts.order})}}", width, box.height)
+    indices = (*parts.indices, *filter(None, extra))
+    return derivative_box(letter_box(parts.base, style), indices, parts.order, style)

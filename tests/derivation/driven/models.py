@@ -92,6 +92,13 @@ MODELS: dict[str, dict[str, Any]] = {
         "inputs": {},
         "at_points": ["y(0) = 0", "y(L) = 1"],
     },
+    "string along an axis": {
+        "equations": ["y'' + w^2*y = 0"],
+        "time": "z",
+        "parameters": {"w": "positive", "L": "positive"},
+        "inputs": {},
+        "at_points": ["y(0) = 0", "y(L) = 1"],
+    },
     "rod between two walls": {
         "equations": ["y'' + b*y' - a^2*y = 0"],
         "parameters": dict.fromkeys(("a", "b", "L"), "positive"),

@@ -31,6 +31,7 @@ __all__ = [
     "forced",
     "free",
     "in_interval",
+    "join",
     "jump",
     "particular",
     "row_of",
@@ -236,6 +237,27 @@ def _function(
                 return
             expected = spot.rows_at(place, t, forced=forced)[row]
             yield equal(f"{spot.model.rows[row]} in interval {place + 1}", value, expected)
+
+
+def join(spot: Spot, said: Said) -> Iterator[Finding]:
+    """What the pieces on both sides of an instant give there, against the true states."""
+    place = said.row["place"]
+    at = spot.instants[place]
+    known = {"-": spot.carried(spot.motion[place - 1], place - 1, at), "+": spot.motion[place]}
+    values = []
+    for side in said.statement.sides:
+        if isinstance(side, Symbol):
+            same = side.kind == "one-sided" and side.letter in spot.model.names
+            if not same or side.argument is None or side.order or len(side.indices) != 1:
+                yield Fault("join", "it is of no state")
+                return
+            yield equal("instant", ball_at(side.argument, spot.names), at)
+            row = spot.model.names.index(side.letter)
+            values.append(known[side.indices[0]][row, 0])
+        else:
+            values.append(ball_at(formula_of(side), spot.names))
+    for value in values[1:]:
+        yield equal("join", value, values[0])
 
 
 def free(spot: Spot, said: Said) -> Iterator[Finding]:

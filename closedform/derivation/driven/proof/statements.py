@@ -111,6 +111,7 @@ PROVERS: dict[str, Prover] = {
     "forced": motion.forced,
     "term": closing.term,
     "balance": closing.balance,
+    "join": motion.join,
     "shared tone": closing.shared_tone,
     "polynomial of A": closing.polynomial_of_a,
     "factor of A": closing.factor_of_a,
