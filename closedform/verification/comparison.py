@@ -116,5 +116,8 @@ def _at_the_limit(open_pairs: Sequence[tuple[str, Pair]], where: str) -> Finding
     for name, (found, _) in open_pairs:
         if not found.is_finite():
             return Finding("refuted", f"{name} has no value{where}, worked to {LIMIT_BITS} bits")
-    name, _ = open_pairs[0]
-    return Finding("not attempted", f"{name} is not settled{where} by {LIMIT_BITS} bits")
+    name, pair = open_pairs[0]
+    how = f"{name} is not settled{where} by {LIMIT_BITS} bits"
+    radius = max((ball.rad() for ball in pair if ball.is_finite()), default=arb(0))
+    known = f": it is known to ± {radius.str(2, radius=False)}" if radius > 0 else ""
+    return Finding("not attempted", how + known)

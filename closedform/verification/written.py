@@ -14,6 +14,7 @@ from flint import acb_mat, arb, arb_mat
 from closedform.algebra.enclosure import ball_of
 from closedform.algebra.spectrum import Factor
 from closedform.notation import enclose, plain, read_formula
+from closedform.notation.errors import FormulaError, UndeclaredNameError
 from closedform.notation.expression import Expression, Product
 from closedform.response.response import Response
 from closedform.verification.comparison import AGREED, Finding, Pair, check_of, compared, listed
@@ -26,7 +27,13 @@ __all__ = ["formula_check", "impulse_check"]
 
 def formula_check(response: Response, references: References, values: NamedValues) -> Check:
     """Every formula as written, read back from plain notation, against ball arithmetic."""
-    parsed = _read_back(response, dict(_written(response)))
+    item = "formulas as written"
+    try:
+        parsed = _read_back(response, dict(_written(response)))
+    except UndeclaredNameError as error:
+        return Check(item, "refuted", f"{error.name} has no definition")
+    except FormulaError as error:  # its text is longer or deeper than what is read
+        return Check(item, "not attempted", f"a formula was not read back: {error}")
 
     def finding(t: Fraction) -> Finding:
         def evaluate(names: Sequence[str]) -> Iterator[Pair]:
@@ -37,7 +44,7 @@ def formula_check(response: Response, references: References, values: NamedValue
         return compared(parsed, evaluate, where=f" at time {t}")
 
     return check_of(
-        "formulas as written",
+        item,
         map(finding, references.times),
         f"{len(parsed)} formulas were read back from their text; agree with the matrix "
         f"exponential of ball arithmetic {AGREED} at the times {listed(references.times)}",
@@ -46,13 +53,17 @@ def formula_check(response: Response, references: References, values: NamedValue
 
 def impulse_check(response: Response, times: tuple[Fraction, ...], values: NamedValues) -> Check:
     """Each g is read back, and is the corner of the exponential of a companion matrix."""
+    item = "functions g as written"
     pairs = zip(response.spectrum.factors, response.closed_forms.impulses, strict=True)
     given = {
         f"g_{number}": (factor, impulse)
         for number, (factor, impulse) in enumerate(pairs, start=1)
         if impulse is not None
     }
-    parsed = _read_back(response, {name: impulse for name, (_, impulse) in given.items()})
+    try:
+        parsed = _read_back(response, {name: impulse for name, (_, impulse) in given.items()})
+    except FormulaError as error:
+        return Check(item, "not attempted", f"a formula was not read back: {error}")
 
     def finding(t: Fraction) -> Finding:
         def evaluate(names: Sequence[str]) -> Iterator[Pair]:
@@ -65,7 +76,7 @@ def impulse_check(response: Response, times: tuple[Fraction, ...], values: Named
         return compared(parsed, evaluate, where=f" at time {t}")
 
     return check_of(
-        "functions g as written",
+        item,
         map(finding, times),
         f"read back from their text; agree with the exponential of the companion matrix {AGREED} "
         f"at the times {listed(times)}",

@@ -62,7 +62,8 @@ def test_a_difference_hidden_by_cancellation_is_found() -> None:
 
 def test_what_is_not_settled_at_the_limit_is_left_open() -> None:
     found, used = one_pair(lambda: (arb(0, 1), arb(0)))
-    assert found == Finding("not attempted", f"it is not settled here by {LIMIT_BITS} bits")
+    how = f"it is not settled here by {LIMIT_BITS} bits: it is known to ± 1.0"
+    assert found == Finding("not attempted", how)
     assert used[-1] == LIMIT_BITS
 
 

@@ -20,6 +20,8 @@ _MOST_HALVED = 4
 """With up to so many intervals that end, the middle of each is shown, too."""
 _PERIODS = (0, 1, 4, 9)
 """The periods of an input that are shown, from 0: the first two in each of their parts."""
+_MOST_PERIODS = 100
+"""Up to so many periods the end of the last one is shown, too: each of them is added up."""
 _BITS = 256
 
 
@@ -27,7 +29,8 @@ def suitable_instants(solution: InField) -> tuple[SurdSum, ...]:
     """Return instants from the start on: each switching, what lies between, and some after.
 
     After the last switching they are those that suit the eigenvalues: see `suitable_times`.
-    Of inputs that repeat the first two periods are shown so, and two later ones.
+    Of inputs that repeat the first two periods are shown so, and two later ones, and the end
+    of a number of them that is not too large.
     An instant with the number pi in it is not shown; one soon after it is.
     """
     field = solution.field
@@ -58,7 +61,7 @@ def _periods(solution: InField) -> list[Scalar]:
         for k in shown:
             inside = starts if k in _PERIODS[:2] else starts[:1]
             found += [at + part.period * field.scalar(k) for at in inside]
-        if part.count is not None:
+        if part.count is not None and part.count <= _MOST_PERIODS:
             found.append(starts[0] + part.period * field.scalar(part.count))
     return found
 

@@ -139,6 +139,7 @@ class Periods:
     ground: Ground
     steps: Steps = field(init=False)
     _kept: dict[tuple[int, int], list[arb]] = field(default_factory=dict)
+    _matrices: dict[int, arb_mat] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
         self.steps = Steps(self.setting, self.ground)
@@ -148,23 +149,37 @@ class Periods:
         return enclose(self.setting.instants[-1]) - enclose(self.setting.instants[0])
 
     def after(self, n: int, enclose: Enclose) -> list[arb]:
-        """The states at the end of the n-th period, impulses there struck."""
-        if not n:
-            return [arb(0)] * self.setting.states
+        """The states at the end of the n-th period, impulses there struck.
+
+        X_n = e^(AT) X_(n-1) + X_1 is carried on by the n-th power of [[e^(AT), X_1], [0, 1]].
+        """
+        states = self.setting.states
         if (n, ctx.prec) not in self._kept:
-            end = enclose(self.setting.instants[-1])
-            one = self.steps.rows(self.setting.last, end, enclose)[: self.setting.states]
-            before = self.after(n - 1, enclose)
-            carried = self.steps.carried_free(before, self.length(enclose), enclose)
-            self._kept[n, ctx.prec] = [a + b for a, b in zip(one, carried, strict=True)]
+            power = self._carrying(enclose) ** n
+            self._kept[n, ctx.prec] = [power[i, states] for i in range(states)]
         return self._kept[n, ctx.prec]
+
+    def _carrying(self, enclose: Enclose) -> arb_mat:
+        """What carries states, and 1 below them, over one period."""
+        if ctx.prec not in self._matrices:
+            n, end = self.setting.states, enclose(self.setting.instants[-1])
+            one = self.steps.rows(self.setting.last, end, enclose)[:n]
+            columns = self._moved(enclose)
+            rows = [[*(column[i] for column in columns), one[i]] for i in range(n)]
+            self._matrices[ctx.prec] = arb_mat([*rows, [*[arb(0)] * n, arb(1)]])
+        return self._matrices[ctx.prec]
+
+    def _moved(self, enclose: Enclose) -> list[list[arb]]:
+        """The columns of e^(AT)."""
+        n = self.setting.states
+        units = [[arb(int(i == k)) for i in range(n)] for k in range(n)]
+        return [self.steps.carried_free(u, self.length(enclose), enclose) for u in units]
 
     def steady(self, enclose: Enclose) -> list[arb]:
         """The state X with X = e^(AT) X + x_1(T)."""
         n = self.setting.states
-        units = [[arb(int(i == k)) for i in range(n)] for k in range(n)]
-        columns = [self.steps.carried_free(u, self.length(enclose), enclose) for u in units]
-        matrix = arb_mat([[units[i][k] - columns[k][i] for k in range(n)] for i in range(n)])
+        columns = self._moved(enclose)
+        matrix = arb_mat([[int(i == k) - columns[k][i] for k in range(n)] for i in range(n)])
         solved = matrix.solve(arb_mat(n, 1, self.after(1, enclose)))
         return [solved[i, 0] for i in range(n)]
 

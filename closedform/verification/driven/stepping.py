@@ -128,14 +128,15 @@ class Steps:
 
     def _begun(self, k: int, enclose: Enclose) -> list[arb]:
         """The states at the beginning of an interval, after impulses there."""
-        if (k, ctx.prec) not in self._kept:
-            if k:
-                at = enclose(self.setting.instants[k])
-                states = self._carried(k - 1, self._begun(k - 1, enclose), at, enclose)
+        done = max((j for j, bits in self._kept if 0 <= j <= k and bits == ctx.prec), default=-1)
+        for j in range(done + 1, k + 1):
+            if j:
+                at = enclose(self.setting.instants[j])
+                states = self._carried(j - 1, self._kept[j - 1, ctx.prec], at, enclose)
             else:
                 states = self.initial(enclose)
-            blow = self.setting.blow(k).to_list()
-            self._kept[k, ctx.prec] = [x + enclose(b) for x, (b,) in zip(states, blow, strict=True)]
+            blow = self.setting.blow(j).to_list()
+            self._kept[j, ctx.prec] = [x + enclose(b) for x, (b,) in zip(states, blow, strict=True)]
         return self._kept[k, ctx.prec]
 
     def _carried(self, k: int, states: list[arb], t: arb, enclose: Enclose) -> list[arb]:

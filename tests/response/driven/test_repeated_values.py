@@ -130,3 +130,12 @@ def test_values_put_in_for_parameters_are_those_in_numbers() -> None:
     plain = numeric([["-1/2"]], [[1]], in_numbers, initial=[1])
     times = [t.as_fraction() for t in found.times]
     assert [list(row) for row in found.rows] == rows_of(plain, times)
+
+
+def test_the_end_of_very_many_periods_is_not_shown() -> None:
+    def last(count: int) -> Fraction:
+        solution = respond_driven(repeated(count)).solutions[0]
+        return default_instants(solution)[-1].as_fraction()
+
+    assert last(20) > 20 * PERIOD
+    assert last(1000000) < 20 * PERIOD

@@ -11,6 +11,7 @@ from closedform.algebra.waves import Constant
 from closedform.model.driven.generator import Generator
 from closedform.model.driven.signal import Burst, Impulse, Signal
 from closedform.notation.expression import Number, Product, Sum
+from closedform.response.driven.response import respond_driven
 from closedform.verification.driven.equations import balance_check, rows_check, state_form_check
 from closedform.verification.driven.generated import generator_check, stacked_check
 from closedform.verification.driven.joins import initial_check, join_check
@@ -31,6 +32,7 @@ from tests.verification.driven.made import (
     refuted,
     response_to,
     setting_to,
+    stated,
     summands_of,
     with_functions,
     with_model,
@@ -485,3 +487,23 @@ def test_a_column_that_is_written_as_another_is_refuted(kind: str) -> None:
             columns = tuple(map(tuple, changed))
             spoiled = with_solution(response, number, columns=columns)
             assert formula_check(setting_to(spoiled, number)).outcome == "refuted"
+
+
+def test_numbers_too_long_to_be_read_back_leave_the_proof_open() -> None:
+    mapping = {"equations": [f"x' = -x + sin({'7' * 500}*t)"], "initial": {"x": 1}}
+    record = verify_driven(respond_driven(stated(mapping)))
+    assert not record.holds
+    assert not record.refuted
+    assert {check.item for check in record.left_open} >= {
+        "formulas as written",
+        "driven formulas as written",
+    }
+    assert all("too large to be held exactly" in check.how for check in record.left_open)
+
+
+def test_how_far_a_number_is_known_is_told_where_it_is_not_settled() -> None:
+    mapping = {"equations": ["x' = -x + sin(t)"], "at_points": ["x(1000000000) = 1"]}
+    record = verify_driven(respond_driven(stated(mapping)))
+    assert not record.refuted
+    (check,) = record.left_open
+    assert "is not settled in interval 1 by 32768 bits: it is known to ± " in check.how

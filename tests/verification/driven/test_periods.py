@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import sys
 from dataclasses import replace
 from fractions import Fraction
 from typing import Any
 
 import pytest
+from flint import arb, ctx
 
 from closedform.notation.expression import Number, Sum
 from closedform.response.driven.response import respond_driven
@@ -15,8 +17,9 @@ from closedform.verification.driven.periods import (
     period_formula_check,
     period_settings,
 )
+from closedform.verification.driven.stepping import Steps
 from closedform.verification.driven.verify import verify_driven
-from tests.verification.driven.made import refuted, stated, with_solution
+from tests.verification.driven.made import refuted, setting_to, stated, with_solution
 from tests.verification.tampering import numbers_of, slips, with_number
 
 KINDS: dict[str, dict[str, Any]] = {
@@ -123,3 +126,27 @@ def test_exponents_of_an_input_beside_those_that_repeat_are_proved(
         "initial": {"x": 1, "y": 1},
     }
     assert refuted(respond_driven(stated(mapping))) == {}
+
+
+def test_a_million_periods_are_carried_on_by_powers() -> None:
+    pump = {"pieces": [{"from": "0", "to": "1", "is": "2"}], "period": "2", "count": 1000000}
+    mapping = {"equations": ["x' = -x + q"], "inputs": {"q": pump}, "initial": {"x": 1}}
+    response = respond_driven(stated(mapping))
+    assert verify_driven(response).holds
+    ((setting, _, written),) = period_settings(response, response.solutions[0])
+    (after,) = written.after or ()
+    spoiled = replace(written, after=(Sum((after, Number(Fraction(1)))),))
+    assert period_formula_check(setting, spoiled).outcome == "refuted"
+
+
+def test_more_instants_than_calls_may_be_nested_are_carried_on() -> None:
+    mapping = {"equations": ["x' = -x + q"], "inputs": {"q": "0"}, "initial": {"x": 1}}
+    setting = setting_to(respond_driven(stated(mapping)))
+    count = sys.getrecursionlimit() + 100
+    timeline = tuple(setting.field.scalar(Fraction(k, count)) for k in range(1, count))
+    later = replace(setting, model=replace(setting.model, timeline=timeline))
+    steps, enclose = Steps(later, setting.grounds[0]), setting.grounds[0].enclose()
+    with ctx.workprec(256):
+        (value,) = steps.rows(count - 1, arb(1), enclose)
+        assert value.overlaps(arb(-1).exp())
+        assert value.rad() < arb("1e-40")

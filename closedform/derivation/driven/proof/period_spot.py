@@ -50,15 +50,29 @@ class PeriodSpot:
         """The parts of a period by their places."""
         return range(len(self.single.instants) - 1)
 
-    @cached_property
-    def _ends(self) -> list[acb_mat]:
-        return [acb_mat(self.spot.a.nrows(), 1)]
-
     def left(self, n: int) -> acb_mat:
-        """Return the state at the end of the n-th period, before anything strikes there."""
-        while len(self._ends) <= n:
-            self._ends.append(self.at_end(self.before(len(self._ends))))
-        return self._ends[n]
+        """Return the state at the end of the n-th period, before anything strikes there.
+
+        From one end to the next it is multiplied by e^(AT), and what a period with the blow
+        before it leaves is added: powers of one matrix carry on a state with 1 below it.
+        """
+        size = self.spot.a.nrows()
+        if not n:
+            return acb_mat(size, 1)
+        first = self.at_end(acb_mat(size, 1))
+        carried = self._carrying ** (n - 1) * acb_mat([*first.tolist(), [acb(1)]])
+        return acb_mat([[carried[i, 0]] for i in range(size)])
+
+    @cached_property
+    def _carrying(self) -> acb_mat:
+        size = self.spot.a.nrows()
+        moved, once = (self.spot.a * self.length).exp(), self._once()
+        rows = [[*moved.tolist()[i], once[i, 0]] for i in range(size)]
+        return acb_mat([*rows, [*[acb(0)] * size, acb(1)]])
+
+    def _once(self) -> acb_mat:
+        """The state at the end of a period from rest, with the blow of the one before."""
+        return self.at_end(self.single.blow(len(self.single.instants) - 1))
 
     def before(self, n: int) -> acb_mat:
         """Return the state right before the start of the n-th period, and what ends the last."""
@@ -76,9 +90,7 @@ class PeriodSpot:
         """Return the state at the end of a steady period: what a period leaves as it began."""
         n = self.spot.a.nrows()
         unit = acb_mat([[acb(int(i == k)) for k in range(n)] for i in range(n)])
-        blow = self.single.blow(len(self.single.instants) - 1)
-        once = self.at_end(blow)
-        return (unit - (self.spot.a * self.length).exp()).solve(once)
+        return (unit - (self.spot.a * self.length).exp()).solve(self._once())
 
     def in_period(self, before: acb_mat, place: int, local: acb) -> list[acb]:
         """Return every row at a local time of a period that begins so."""
