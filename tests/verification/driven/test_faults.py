@@ -494,10 +494,7 @@ def test_numbers_too_long_to_be_read_back_leave_the_proof_open() -> None:
     record = verify_driven(respond_driven(stated(mapping)))
     assert not record.holds
     assert not record.refuted
-    assert {check.item for check in record.left_open} >= {
-        "formulas as written",
-        "driven formulas as written",
-    }
+    assert "formulas as written" in {check.item for check in record.left_open}
     assert all("too large to be held exactly" in check.how for check in record.left_open)
 
 
