@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from typing import Any
 
 from closedform.model.driven.model import DrivenModel
+from closedform.model.driven.signal import Repeat
 from closedform.notation.expression import Expression, Name
 from closedform.notation.plain import plain
 from closedform.response.driven.composition import element_formula, step_formula
@@ -15,7 +16,7 @@ from closedform.response.driven.polar import Angle
 from closedform.response.driven.resonance import Resonance
 from closedform.response.driven.response import DrivenSolution
 
-__all__ = ["in_rows", "input_names", "parts_of"]
+__all__ = ["input_names", "parts_of"]
 
 
 def input_names(model: DrivenModel) -> tuple[Name, ...]:
@@ -38,8 +39,54 @@ def input_names(model: DrivenModel) -> tuple[Name, ...]:
     return tuple(found)
 
 
-def in_rows(model: DrivenModel, formulas: Sequence[Expression]) -> dict[str, Any]:
-    """Return a formula for each row of a model, by what the row is."""
+def parts_of(solution: DrivenSolution) -> dict[str, Any]:
+    """Return the solution and the parts of it that there are.
+
+    Where inputs repeat, the parts of all else stand in one of their own.
+    """
+    model = solution.model
+    told: dict[str, Any] = {}
+    if solution.has_one_formula:
+        told |= _in_rows(model, solution.solution)
+    if solution.periodic:
+        told["base"] = _in_rows(model, solution.base) | _pieces(solution)
+        told["periodic"] = [
+            _periodic(model, own, functions.repeat)
+            for own, functions in zip(solution.periodic, solution.periods, strict=True)
+        ]
+    else:
+        told |= _pieces(solution)
+    steady = solution.steady_state
+    if steady is not None:
+        told["steady_state"] = _in_rows(model, steady.steady_formulas)
+        told["steady_state"]["sinusoids"] = {
+            model.rows[own.row]: _phasor(model, own) for own in solution.phasors if own is not None
+        }
+        told["transient"] = _in_rows(model, steady.transient_formulas)
+    if solution.points is not None:
+        constants = solution.points.constants
+        told["constants"] = {c.name: plain(c.formula) for c in constants}
+        told["provided"] = list(map(plain, solution.points.provided))
+    told["resonance"] = [_resonance(model, own) for own in solution.resonances]
+    return told
+
+
+def _pieces(solution: DrivenSolution) -> dict[str, Any]:
+    """The intervals, and the free and the forced response."""
+    model, functions = solution.model, solution.functions
+    told: dict[str, Any] = {}
+    if len(functions.intervals) > 1:
+        told["pieces"] = [
+            {**_bounds(solution, place), **_in_rows(model, rows)}
+            for place, rows in enumerate(solution.pieces)
+        ]
+    told["free"] = _in_rows(model, solution.of(functions.free))
+    told["forced"] = _in_rows(model, _forced(solution))
+    return told
+
+
+def _in_rows(model: DrivenModel, formulas: Sequence[Expression]) -> dict[str, Any]:
+    """A formula for each row of a model, by what the row is."""
     texts = list(map(plain, formulas))
     n, e = len(model.names), len(model.reduction.eliminated)
     return {
@@ -49,34 +96,6 @@ def in_rows(model: DrivenModel, formulas: Sequence[Expression]) -> dict[str, Any
             zip((output.name for output in model.outputs), texts[n + e :], strict=True)
         ),
     }
-
-
-def parts_of(solution: DrivenSolution) -> dict[str, Any]:
-    """Return the parts of a solution that there are."""
-    model, functions = solution.model, solution.functions
-    told: dict[str, Any] = {}
-    if len(functions.intervals) > 1:
-        told["pieces"] = [
-            {**_bounds(solution, place), **in_rows(model, rows)}
-            for place, rows in enumerate(solution.pieces)
-        ]
-    told["free"] = in_rows(model, solution.of(functions.free))
-    told["forced"] = in_rows(model, _forced(solution))
-    steady = solution.steady_state
-    if steady is not None:
-        told["steady_state"] = in_rows(model, steady.steady_formulas)
-        told["steady_state"]["sinusoids"] = {
-            model.rows[own.row]: _phasor(model, own) for own in solution.phasors if own is not None
-        }
-        told["transient"] = in_rows(model, steady.transient_formulas)
-    if solution.points is not None:
-        constants = solution.points.constants
-        told["constants"] = {c.name: plain(c.formula) for c in constants}
-        told["provided"] = list(map(plain, solution.points.provided))
-    told["resonance"] = [_resonance(model, own) for own in solution.resonances]
-    if solution.periodic:
-        told["periodic"] = [_periodic(model, own) for own in solution.periodic]
-    return told
 
 
 def _bounds(solution: DrivenSolution, place: int) -> dict[str, str | None]:
@@ -133,8 +152,10 @@ def _resonance(model: DrivenModel, own: Resonance) -> dict[str, Any]:
     }
 
 
-def _periodic(model: DrivenModel, own: PeriodicSolution) -> dict[str, Any]:
+def _periodic(model: DrivenModel, own: PeriodicSolution, repeat: Repeat) -> dict[str, Any]:
+    named = zip(input_names(model), model.inputs, strict=True)
     told: dict[str, Any] = {
+        "inputs": [name.text for name, given in named if given.signal.repeat == repeat],
         "period": plain(own.period),
         "start": plain(own.start),
         "number": own.number,
@@ -150,7 +171,7 @@ def _periodic(model: DrivenModel, own: PeriodicSolution) -> dict[str, Any]:
     if own.count is not None:
         told["count"] = own.count
     if own.after is not None:
-        told["after"] = in_rows(model, own.after)
+        told["after"] = _in_rows(model, own.after)
     if own.steady is not None:
         told["steady"] = _stretches(model, own.steady)
     if own.begins is not None:
@@ -160,6 +181,6 @@ def _periodic(model: DrivenModel, own: PeriodicSolution) -> dict[str, Any]:
 
 def _stretches(model: DrivenModel, stretches: Sequence[PeriodStretch]) -> list[dict[str, Any]]:
     return [
-        {"from": plain(own.start), "to": plain(own.end), **in_rows(model, own.rows)}
+        {"from": plain(own.start), "to": plain(own.end), **_in_rows(model, own.rows)}
         for own in stretches
     ]

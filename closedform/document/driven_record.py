@@ -12,7 +12,7 @@ from closedform.algebra.enclosure import certified_decimal
 from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.derivation.driven.signals import waves_formula
 from closedform.derivation.driven.writing import Writing
-from closedform.document.driven_parts import in_rows, input_names, parts_of
+from closedform.document.driven_parts import input_names, parts_of
 from closedform.document.numeric_record import numeric_record
 from closedform.document.parametric_record import checks_as_data, parametric_record
 from closedform.model.driven.model import DrivenModel, Input, PointCondition
@@ -142,7 +142,6 @@ def _solved(solution: DrivenSolution) -> dict[str, Any]:
         "characteristic_polynomial": _texts(writing, stability.characteristic),
         "eigenvalues": eigenvalues,
         "stability": stability.verdict,
-        **in_rows(solution.model, solution.solution),
         **parts_of(solution),
     }
 

@@ -15,6 +15,7 @@ from closedform.document.record import DIGITS, record_of, record_text
 from closedform.model.building import model_from
 from closedform.model.parametric import ValueSet
 from closedform.response.driven.numbers import driven_numbers_at
+from closedform.response.driven.period_formulas import MOST_PERIODS_WRITTEN
 from closedform.response.driven.response import DrivenResponse, respond_driven
 from closedform.response.parametric.response import ParametricResponse
 from closedform.verification.parametric.record import CaseRecords
@@ -81,7 +82,25 @@ POINTS = {
     name: model_from(stated, name="points")
     for name, stated in {"rod": ROD, "beam": BEAM, "throw": THROW}.items()
 }
-REPEATED = {"for ever": repeated(None), "three times": repeated(3)}
+REPEATED = {
+    "for ever": repeated(None),
+    "three times": repeated(3),
+    "often": repeated(MOST_PERIODS_WRITTEN + 1),
+    "two ways": model_from(
+        {
+            "title": "Doses of one period, some and for ever",
+            "equations": ["x' = d - x/2", "y' = x - y + r + s(t - 1)"],
+            "initial": {"x": 1, "y": 0},
+            "inputs": {
+                "d": {"is": "2*delta(t)", "period": "3", "count": 2},
+                "r": {"pieces": [{"from": "1", "to": "2", "is": "t"}], "period": "3", "count": 4},
+                "s": "exp(-t)",
+            },
+            "outputs": {"z": "x + r"},
+        },
+        name="two",
+    ),
+}
 
 
 @cache
@@ -159,6 +178,11 @@ SPOILT_PERIODS: list[tuple[str, Callable[[Record], object]]] = [
     ("three times", lambda r: r["periodic"][0]["after"]["solution"].__setitem__(0, "0")),
     ("three times", lambda r: r["periodic"][0].update(period="4")),
     ("three times", lambda r: r["periodic"].clear()),
+    ("three times", lambda r: r["periodic"][0].update(count=4)),
+    ("three times", lambda r: r["solution"].__setitem__(0, r["base"]["solution"][0])),
+    ("two ways", lambda r: r["outputs"].update(z="0")),
+    ("two ways", lambda r: r["periodic"][0].update(inputs=["d", "r"])),
+    ("for ever", lambda r: r["base"]["solution"].__setitem__(0, "0")),
 ]
 
 
@@ -179,6 +203,14 @@ def test_an_input_that_repeats_is_told_by_one_period() -> None:
     assert entry["repeat"] == {"period": "3", "start": "0", "count": 3}
 
 
+def test_what_is_no_whole_solution_is_not_called_one() -> None:
+    for name, is_whole in (("for ever", False), ("often", False), ("three times", True)):
+        record = stored(name)
+        assert ("solution" in record) is is_whole
+        assert not {"pieces", "free", "forced", "steady_state", "transient"} & set(record)
+        assert set(record["base"]) >= {"solution", "free", "forced"}
+
+
 REFUSED: list[tuple[str, Callable[[Record], object]]] = [
     ("blow", lambda r: r.pop("inputs")),
     ("blow", lambda r: r.pop("initial")),
@@ -190,6 +222,11 @@ REFUSED: list[tuple[str, Callable[[Record], object]]] = [
     ("pump", lambda r: r["cases"][0].pop("free")),
     ("pump", lambda r: r["values"][0].update(case=-1)),
     ("pump", lambda r: r.update(names={})),
+    ("for ever", lambda r: r.update(solution=r["base"]["solution"])),
+    ("for ever", lambda r: r.update(forced=r["base"]["forced"])),
+    ("for ever", lambda r: r.pop("base")),
+    ("three times", lambda r: r.pop("outputs")),
+    ("blow", lambda r: r.update(base={})),
 ]
 
 
@@ -208,6 +245,7 @@ def test_every_key_of_a_record_of_a_driven_model_is_described() -> None:
         "input",
         "piece",
         "periodic",
+        "base",
     ):
         left = [path.rsplit("/", 1)[-1] for path in described(SCHEMA["$defs"][name])]
         assert set(left) <= {"names", "verification", "eigenvalues", "spectral"}, (name, left)

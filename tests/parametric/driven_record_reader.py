@@ -79,7 +79,9 @@ def check_driven_texts(record: Record) -> None:
         _names(text, {*record["states"], *record["inputs"], *constants})
     for case in record.get("cases", (record,)):
         known = {time, *constants, *case["names"]}
-        for rows in (case, case["free"], case["forced"], *_optional(case)):
+        own = case.get("base", case)
+        whole = [case] if "solution" in case else []
+        for rows in (*whole, own, own["free"], own["forced"], *_optional(case), *_optional(own)):
             for text in (
                 *rows["solution"],
                 *rows["eliminated"].values(),
@@ -175,7 +177,8 @@ def _names(text: str, allowed: set[str]) -> None:
 
 
 def _check(record: Record, case: Record, known: Mapping[str, Number]) -> None:
-    here = _Case(record, case, known)
+    own = case.get("base", case)
+    here = _Case(record, own, known)
     told = [_Periodic(here, own) for own in case.get("periodic", ())]
     for periodic in told:
         periodic.check()
@@ -183,7 +186,9 @@ def _check(record: Record, case: Record, known: Mapping[str, Number]) -> None:
     if sorted(names) != sorted(set(record["inputs"]) - set(here.inputs)):
         raise DisagreementError(f"{', '.join(names) or 'none'} of the inputs that repeat are told")
     instants = [here.number(text) for text in (record["start"], *record["instants"])]
-    pieces = case.get("pieces", [{**case, "from": record["start"], "to": None}])
+    if told and "solution" in case:
+        _check_whole(here, case, told)
+    pieces = own.get("pieces", [{**own, "from": record["start"], "to": None}])
     if len(pieces) != len(instants):
         raise DisagreementError(f"{len(instants)} intervals, but {len(pieces)} pieces")
     here.starts(pieces[0], instants[0])
@@ -202,6 +207,22 @@ def _check(record: Record, case: Record, known: Mapping[str, Number]) -> None:
             here.holds(piece, t)
             if last:
                 here.parts(piece, t)
+
+
+def _check_whole(here: _Case, case: Record, told: Sequence[_Periodic]) -> None:
+    """One formula for all times: what does not repeat, and what repeats."""
+    instants = [
+        _add(periodic.start, _mul(_add(Fraction(n), share), periodic.period))
+        for periodic in told
+        for n in range((periodic.own.get("count") or 1) + 2)
+        for share in SHARES
+    ]
+    for t in instants:
+        for kind in ("solution", "eliminated", "outputs"):
+            expected = here.values(_texts(here.case[kind]), t)
+            for periodic in told:
+                expected = _sums(expected, periodic.added(kind, t))
+            here.same(here.values(_texts(case[kind]), t), expected, f"{kind} for all times")
 
 
 class _Case:
@@ -354,11 +375,12 @@ class _Periodic:
     def __init__(self, here: _Case, own: Record) -> None:
         self.here, self.own = here, own
         self.start, self.period = here.number(own["start"]), here.number(own["period"])
-        self.inputs = {
-            name: entry
-            for name, entry in here.record["inputs"].items()
-            if "repeat" in entry and entry["repeat"]["period"] == own["period"]
-        }
+        self.inputs = {name: here.record["inputs"][name] for name in own["inputs"]}
+        for name, entry in self.inputs.items():
+            if any(
+                entry["repeat"].get(key) != own.get(key) for key in ("period", "start", "count")
+            ):
+                raise DisagreementError(f"{name} repeats in another way")
         self.feed = here.columns(self.inputs)
         self.bounds = [here.number(s["from"]) for s in own["stretches"]]
         self.ends = [here.number(s["to"]) for s in own["stretches"]]
@@ -390,6 +412,21 @@ class _Periodic:
                 self.states(len(self.bounds) - 1, 1, self.period), self.blows(Fraction(0))
             )
             here.same(self.states(0, 1, Fraction(0)), again, "the periodic steady state")
+
+    def added(self, kind: str, t: Number) -> list[Number]:
+        """What is added at an instant that is no end of a part of a period."""
+        here, since = self.here, _add(t, -self.start)
+        rows = self.own["stretches"][0][kind]
+        if ball_of(since) < 0:
+            return [Fraction(0)] * len(rows)
+        n = int(ball_of(_div(since, self.period)).mid().floor().unique_fmpz() or 0) + 1
+        if n > self.own.get("count", n):
+            return here.values(_texts(self.own["after"][kind]), t)
+        local = _add(since, -_mul(Fraction(n - 1), self.period))
+        place = max(k for k, low in enumerate(self.bounds) if not ball_of(_add(low, -local)) > 0)
+        names = {self.own["number"]: (Fraction(n), Fraction(0)), self.own["local"]: (local, ONE)}
+        texts = _texts(self.own["stretches"][place][kind])
+        return [here.at(text, local, **names)[0] for text in texts]
 
     def jets(self, place: int, n: int, local: Number) -> list[Jet]:
         names = {self.own["number"]: (Fraction(n), Fraction(0)), self.own["local"]: (local, ONE)}

@@ -261,7 +261,7 @@ def driven_solution_step(
                 }
             )
         pieces = Statement("driven solution", (symbol, Symbol("cases", parts=tuple(parts))))
-        steps = Statement("with unit steps", (symbol, solution.solution[row]))
+        steps = Statement("with unit steps", (symbol, solution.base[row]))
         rows.append({"whole": pieces, "lines": lines, "steps": steps})
     told = {
         **facts,

@@ -16,8 +16,10 @@ from closedform.response.driven.composition import (
     constant_formula,
     element_formula,
     renamed,
+    step_formula,
     summed,
 )
+from closedform.response.driven.functions import Interval, Summand, Switch
 from closedform.response.driven.period_amounts import writing_of
 from closedform.response.driven.period_guards import Guards
 from closedform.response.driven.period_sums import PeriodSums
@@ -35,6 +37,9 @@ from closedform.response.parametric.case import Case
 __all__ = ["PeriodStretch", "PeriodicSolution", "RepeatedModeError", "periodic_solution"]
 
 Rows = tuple[tuple[Expression, ...], ...]
+
+MOST_PERIODS_WRITTEN = 24
+"""Up to so many periods are written in one formula for all times."""
 
 
 class RepeatedModeError(InputError):
@@ -79,6 +84,8 @@ class PeriodicSolution:
     Every formula in `provided` is a divisor: where one vanishes, a pair of eigenvalues ± i w
     has a whole number of turns in a period, and there is resonance.  `meets` are the
     frequencies of pairs of which that is so throughout.
+
+    `for_all_times` are the formulas in one, with unit steps: up to a number of periods.
     """
 
     period: Expression
@@ -94,6 +101,7 @@ class PeriodicSolution:
     carried: tuple[Expression, ...] = ()
     begins: tuple[Expression, ...] | None = None
     meets: tuple[Expression, ...] = ()
+    for_all_times: tuple[Expression, ...] | None = None
 
 
 def periodic_solution(
@@ -132,6 +140,7 @@ def periodic_solution(
             carried=writer.at_end(number),
             begins=writer.at_end(ENDLESS) if lasting else None,
             meets=writer.meets(),
+            for_all_times=None if count is None else writer.for_all_times(count),
         )
     except UnwrittenSumError as error:
         raise RepeatedModeError(model.name, _mode(error.part)) from error
@@ -235,6 +244,34 @@ class _Writer:
                     self._of(blow, part, -(blow.at + begun), Count(fixed=count))
                     for blow, part in self._blows(row)
                 ],
+                self.model.time,
+            )
+            for row in range(len(self.columns))
+        )
+
+    def for_all_times(self, count: int) -> tuple[Expression, ...] | None:
+        """The formulas in the model's time, one period after the other; None for too many."""
+        if count > MOST_PERIODS_WRITTEN:
+            return None
+        single = self.functions.single
+        begun = [(self.first, single.intervals[0].summands)]
+        begun += [(switch.at, switch.summands) for switch in single.switches]
+        joined: dict[Scalar, tuple[Summand, ...]] = {}
+        for k in range(count):
+            later = self.length * k
+            for at, summands in begun:
+                moved = tuple(replace(s, origin=s.origin + later) for s in summands)
+                joined[at + later] = (*joined.get(at + later, ()), *moved)
+        begins = self.functions.repeat.start == self.model.start
+        at_start = joined.pop(self.first) if begins else ()
+        switches = [Switch(at, summands, jump=False) for at, summands in joined.items()]
+        return tuple(
+            step_formula(
+                self.field,
+                self.columns,
+                row,
+                Interval(self.first, None, at_start),
+                switches,
                 self.model.time,
             )
             for row in range(len(self.columns))

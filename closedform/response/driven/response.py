@@ -30,7 +30,7 @@ from closedform.response.driven.composition import (
 from closedform.response.driven.determined import determined, names_of_constants, written
 from closedform.response.driven.functions import DrivenFunctions
 from closedform.response.driven.particular import beside
-from closedform.response.driven.period_formulas import periodic_solution
+from closedform.response.driven.period_formulas import PeriodicSolution, periodic_solution
 from closedform.response.driven.periodic import (
     PeriodFunctions,
     period_functions,
@@ -85,36 +85,61 @@ class DrivenResponse:
 
     def _lines(self, solution: DrivenSolution) -> list[str]:
         time, rows = self.model.time, self.model.rows
+        one = solution.has_one_formula
+        shown = solution.solution if one else solution.base
+        more = "" if one else " + what repeats"
         lines = [
-            f"{name}({time}) = {plain(formula)}"
-            for name, formula in zip(rows, solution.solution, strict=True)
+            f"{name}({time}) = {plain(formula)}{more}"
+            for name, formula in zip(rows, shown, strict=True)
         ]
         if solution.points is not None:
             lines += [
                 f"{c.name} = {plain(c.formula)}" for c in solution.points.constants if not c.put_in
             ]
             lines += [f"provided that {plain(f)} != 0" for f in solution.points.provided]
-        for own in solution.periodic:
-            start = "" if own.start == ZERO else f"{plain(own.start)} + "
-            begun = f"{start}({own.number} - 1)*{plain(own.period)}"
-            lines.append(f"added {own.local} after {begun}:")
-            for stretch in own.stretches:
-                lines.append(f"  {plain(stretch.start)} <= {own.local} < {plain(stretch.end)}:")
-                lines += [
-                    f"    {name}: {plain(formula)}"
-                    for name, formula in zip(rows, stretch.rows, strict=True)
-                ]
+        for own in () if one else solution.periodic:
+            lines += self._added(own)
+        return lines
+
+    def _added(self, own: PeriodicSolution) -> list[str]:
+        """What inputs that repeat add."""
+        rows = self.model.rows
+        start = "" if own.start == ZERO else f"{plain(own.start)} + "
+        begun = f"{start}({own.number} - 1)*{plain(own.period)}"
+        last = "…" if own.count is None else f"… {own.count}"
+        lines = [f"what repeats, {own.local} after {begun}, for {own.number} = 1, 2, {last}:"]
+        for stretch in own.stretches:
+            lines.append(f"  {plain(stretch.start)} <= {own.local} < {plain(stretch.end)}:")
+            lines += [
+                f"    {name}: {plain(formula)}"
+                for name, formula in zip(rows, stretch.rows, strict=True)
+            ]
+        if own.after is not None:
+            lines.append("  after these:")
+            lines += [
+                f"    {name}: {plain(formula)}"
+                for name, formula in zip(rows, own.after, strict=True)
+            ]
         return lines
 
     @property
     def solution(self) -> FormulaColumn:
-        """The formulas of the only case.  Raises ValueError where there are several."""
+        """The formulas of the only case, for all times.
+
+        Raises:  ValueError where there are several cases; UnendingSolutionError where inputs
+                 repeat for ever, or too often for one formula.
+        """
         if len(self.solutions) > 1:
             raise ValueError("there are several cases; ask each of `solutions` for its solution")
         return self.solutions[0].solution
 
-    def _repr_latex_(self) -> str:
-        """Return the solution as LaTeX for a notebook, a row for each case."""
+    def _repr_latex_(self) -> str | None:
+        """Return the solution as LaTeX for a notebook, a row for each case.
+
+        None where inputs repeat for ever: a notebook shows the text of the response then.
+        """
+        if not all(solution.has_one_formula for solution in self.solutions):
+            return None
         cases = ((s.solution, () if s.case is None else s.case.conditions) for s in self.solutions)
         return cases_latex(
             [(column, [c.latex for c in conditions]) for column, conditions in cases]

@@ -9,10 +9,13 @@ from closedform.algebra.field import Scalar
 from closedform.algebra.hurwitz import sign_oracle
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.sign_argument import SignArgument
+from closedform.errors import InputError
 from closedform.model.driven.model import DrivenModel
-from closedform.notation.expression import Expression
+from closedform.notation.expression import ZERO, Expression
 from closedform.notation.shown import FormulaColumn
+from closedform.notation.terms import opened, sum_of
 from closedform.response.driven.composition import (
+    element_formula,
     interval_formula,
     step_formula,
 )
@@ -29,9 +32,24 @@ from closedform.response.driven.stability import Stability
 from closedform.response.driven.steady import SteadyState, steady_state
 from closedform.response.parametric.case import Case
 
-__all__ = ["DrivenSolution"]
+__all__ = ["DrivenSolution", "UnendingSolutionError"]
 
 Rows = tuple[tuple[Expression, ...], ...]
+
+
+class UnendingSolutionError(InputError):
+    """A solution that no single formula states: its inputs repeat too often, or for ever."""
+
+    def __init__(self, model: str) -> None:
+        super().__init__(model)
+        self.model = model
+
+    def __str__(self) -> str:
+        return (
+            f"{self.model}: inputs repeat for ever or very often, so no one formula holds for all "
+            "times. The solution is `base`, and added to it what `periodic` has for the n-th "
+            "period; `solution_at` gives values."
+        )
 
 
 @dataclass(frozen=True, repr=False)
@@ -89,7 +107,26 @@ class DrivenSolution:
 
     @cached_property
     def solution(self) -> FormulaColumn:
-        """A formula for each row of the model, for all times: in the form with unit steps."""
+        """A formula for each row of the model, for all times: in the form with unit steps.
+
+        Raises UnendingSolutionError where inputs repeat for ever, or too often for one formula.
+        """
+        if not self.has_one_formula:
+            raise UnendingSolutionError(self.model.name)
+        added = [own.for_all_times or () for own in self.periodic]
+        return FormulaColumn(
+            opened(sum_of([term for term in terms if term != ZERO] or [ZERO]))
+            for terms in zip(self.base, *added, strict=True)
+        )
+
+    @property
+    def has_one_formula(self) -> bool:
+        """Whether one formula holds for all times."""
+        return all(own.for_all_times is not None for own in self.periodic)
+
+    @cached_property
+    def base(self) -> FormulaColumn:
+        """What `solution` is but for inputs that repeat: what these add is in `periodic`."""
         functions, model = self.functions, self.model
         return FormulaColumn(
             step_formula(
@@ -104,8 +141,30 @@ class DrivenSolution:
         )
 
     @cached_property
+    def start_jump(self) -> FormulaColumn | None:
+        """What impulses at the start add to each state: B times their amounts.
+
+        Initial values are those just before it.  None where nothing strikes at the start.
+        """
+        model, field = self.model, self.model.field
+        matrix = model.reduction.input_matrix
+        struck = [
+            (place, impulse.amount)
+            for place, given in enumerate(model.inputs)
+            for impulse in given.signal.impulses
+            if impulse.at == model.start
+        ]
+        if matrix is None or not struck:
+            return None
+        zero = field.domain.zero
+        return FormulaColumn(
+            element_formula(field, self.put(sum((row[k] * a for k, a in struck), zero)))
+            for row in matrix.to_list()
+        )
+
+    @cached_property
     def pieces(self) -> tuple[FormulaColumn, ...]:
-        """For each interval, a formula for each row."""
+        """For each interval, a formula for each row; of what is in `base`."""
         return tuple(self.in_interval(interval) for interval in self.functions.intervals)
 
     def in_interval(self, interval: Interval) -> FormulaColumn:

@@ -196,7 +196,10 @@ class Periods:
 
 @dataclass(frozen=True)
 class _Asked:
-    """A formula of a row in part k of the n-th period (None: steady), or after them all."""
+    """A formula of a row in part k of the n-th period (None: steady), or after them all.
+
+    It may use the local time and the number of the period, or the time of the model.
+    """
 
     formula: Expression
     row: int
@@ -252,6 +255,12 @@ def _asked(
     yield from stretched(written.steady or (), "steady period", [None])
     for row, formula in enumerate(written.after or ()):
         yield f"after the last period, row {row + 1}", _Asked(read(formula), row, None, None)
+    for row, formula in enumerate(written.for_all_times or ()):
+        own, told = read(formula), f"for all times, row {row + 1}"
+        yield f"after the last period, {told}", _Asked(own, row, None, None)
+        for n in range(1, (written.count or 0) + 1):
+            for k in range(len(written.stretches)):
+                yield f"period {n}, part {k + 1}, {told}", _Asked(own, row, k, n)
 
 
 def _finding(
@@ -278,6 +287,8 @@ def _finding(
                 since = setting.inside(own.k, enclose)[part] - begin
                 values[written.local] = since
                 values[written.number] = arb(own.n or 0)
+                begun = begin + periods.length(enclose) * ((own.n or 1) - 1)
+                values[setting.model.time] = begun + since
             if (own.k, own.n) not in kept:
                 kept[own.k, own.n] = _expected(periods, written, own, since, enclose)
             yield enclose_formula(own.formula, values), kept[own.k, own.n][own.row]

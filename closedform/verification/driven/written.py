@@ -96,7 +96,7 @@ def _written(setting: Setting, k: int) -> Iterator[tuple[str, _Written]]:
 
     kinds: list[tuple[str, Sequence[Expression], Callable[..., list[arb]]]] = [
         ("piece", solution.pieces[k], whole),
-        ("form with unit steps", solution.solution, whole),
+        ("form with unit steps", solution.base, whole),
         ("free part", solution.of(functions.free), free),
         ("forced part", solution.in_interval(functions.forced[k]), forced),
     ]

@@ -10,7 +10,8 @@ from typing import Any
 import pytest
 from flint import arb, ctx
 
-from closedform.notation.expression import Number, Sum
+from closedform.notation.expression import Call, Number, Sum
+from closedform.notation.reader import read_formula
 from closedform.response.driven.response import respond_driven
 from closedform.verification.driven.periods import (
     blow_check,
@@ -76,6 +77,17 @@ def test_formulas_after_the_last_period_are_checked() -> None:
     after = tuple(Sum((formula, Number(Fraction(1)))) for formula in written.after)
     spoiled = replace(written, after=after)
     assert period_formula_check(setting, spoiled).outcome == "refuted"
+
+
+def test_the_formula_for_all_times_is_checked_in_every_period() -> None:
+    response = respond_driven(stated(KINDS["some blows"]))
+    ((setting, _, written),) = period_settings(response, response.solutions[0])
+    assert written.for_all_times is not None
+    first, *others = written.for_all_times
+    for k in range(3):
+        gone = Call("step", read_formula(f"t - {5 * k}/2 - 1", names=frozenset("t")))
+        spoiled = replace(written, for_all_times=(Sum((first, gone)), *others))
+        assert period_formula_check(setting, spoiled).outcome == "refuted"
 
 
 @each_kind
