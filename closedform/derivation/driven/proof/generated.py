@@ -47,27 +47,32 @@ __all__ = [
 
 
 def input_statement(spot: Spot, said: Said) -> Iterator[Finding]:
-    """An input, as typed or in pieces, against its waves."""
+    """An input, as typed or in pieces, against its waves.
+
+    A formula that was declared holds for every delay and derivative of the input; pieces and
+    impulses are printed for each as it acts.
+    """
     left, right = said.statement.sides
     model = spot.model
     name = left.letter if isinstance(left, Symbol) else ""
-    columns = [
-        (k, given)
-        for k, given in enumerate(model.inputs)
-        if (given.name == name if name else given.formula == left)
-        or (isinstance(given.formula, Name) and given.formula.text == name)
-    ]
-    if not columns:
-        yield Fault("input", f"the model has no input {name or left}")
-        return
-    for k, given in columns:
+    found = False
+    for k, given in enumerate(model.inputs):
+        declared = bool(name) and given.name == name and given.definition == right
+        if not declared and given.formula != (Name(name) if name else left):
+            continue
+        found = True
+        order, argument = _shape(given) if declared else (0, None)
         if given.signal.repeat is None:
-            yield from _input_values(spot, k, given, right, of_name=bool(name))
-        elif name and given.formula == Name(name):
-            yield from _first_period(spot, given, right)
+            yield from _input_values(spot, k, right, order, argument)
+        else:
+            yield from _first_period(spot, given, right, order, argument)
+    if not found:
+        yield Fault("input", f"the model has no input {name or left}")
 
 
-def _first_period(spot: Spot, given: Input, side: Side) -> Iterator[Finding]:
+def _first_period(
+    spot: Spot, given: Input, side: Side, order: int, argument: Expression | None
+) -> Iterator[Finding]:
     """The printed period of an input that repeats, against its waves."""
     repeat = given.signal.repeat
     if repeat is None:
@@ -75,42 +80,44 @@ def _first_period(spot: Spot, given: Input, side: Side) -> Iterator[Finding]:
     first, length = spot.element(repeat.start), spot.element(repeat.period)
     for share in (5, 23, 50, 83):  # over a prime: nothing is likely to switch there
         t = first + length * share / 97
-        names = {**spot.names, spot.model.time: t}
         expected = acb(0)
         for burst in given.signal.bursts:
             low = first if burst.start is None else spot.element(burst.start)
             high = first + length if burst.end is None else spot.element(burst.end)
             if not bool(t.real < low.real) and bool(t.real < high.real):
                 expected += sum((spot.wave_at(wave, t) for wave in burst.waves), acb(0))
-        try:
-            value = side_at(side, names, names)
-        except NoPieceError as wrong:
-            yield Fault("input", str(wrong))
-            return
-        yield equal(f"input {given.name}", value, expected)
+        yield _stated_value(spot, given, side, t, (order, argument), expected)
 
 
 def _input_values(
-    spot: Spot, column: int, given: Input, side: Side, *, of_name: bool
+    spot: Spot, column: int, side: Side, order: int, argument: Expression | None
 ) -> Iterator[Finding]:
     """The printed function of a name, delayed and derived as the input is, against its waves."""
-    order, argument = _shape(given) if of_name else (0, None)
-    if isinstance(side, Symbol) and given.formula != Name(given.name) and of_name:
-        order, argument = 0, None
+    given = spot.model.inputs[column]
     for place in spot.places:
         for t in spot.times(place):
-            names = {**spot.names, spot.model.time: t}
-            at = t if argument is None else ball_at(argument, names)
-            now = {**spot.names, spot.model.time: at}
-            series = {**spot.names, spot.model.time: acb_series([at, acb(1)], SERIES)}
-            try:
-                value = side_at(side, series, now)
-            except NoPieceError as wrong:
-                yield Fault("input", str(wrong))
-                return
-            found = derivative(value, order)
             expected = spot.input_series(column, place, t)[0]
-            yield equal(f"input {given.name}", found, expected)
+            yield _stated_value(spot, given, side, t, (order, argument), expected)
+
+
+def _stated_value(
+    spot: Spot,
+    given: Input,
+    side: Side,
+    t: acb,
+    shape: tuple[int, Expression | None],
+    expected: acb,
+) -> Finding:
+    """What a printed side is at an instant, or a derivative of it at another."""
+    order, argument = shape
+    at = t if argument is None else ball_at(argument, {**spot.names, spot.model.time: t})
+    now = {**spot.names, spot.model.time: at}
+    series = {**spot.names, spot.model.time: acb_series([at, acb(1)], SERIES)}
+    try:
+        value = side_at(side, series, now)
+    except NoPieceError as wrong:
+        return Fault("input", str(wrong))
+    return equal(f"input {given.name}", derivative(value, order), expected)
 
 
 def _shape(given: Input) -> tuple[int, Expression | None]:

@@ -8,6 +8,7 @@ from typing import Any
 from flint import acb, acb_mat
 
 from closedform.derivation.driven.model_steps import SECOND_ORDER, second_order_matrices
+from closedform.derivation.driven.proof.input_labels import with_inputs
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.values import as_matrix, column_at, equal, formula_at
 from closedform.derivation.driven.signals import input_formula
@@ -25,17 +26,7 @@ from closedform.derivation.proof.finding import (
     whether,
 )
 from closedform.derivation.step import Matrix, Side, Symbol
-from closedform.notation.expression import (
-    Call,
-    Expression,
-    Name,
-    Negation,
-    Number,
-    Power,
-    Product,
-    Quotient,
-    Sum,
-)
+from closedform.notation.expression import Name
 
 __all__ = [
     "condition",
@@ -82,39 +73,12 @@ def named_at(spot: Spot, t: acb, state: acb_mat, inputs: acb_mat) -> dict[str, A
     return names
 
 
-def _with_inputs(spot: Spot, formula: Expression) -> Expression:
-    """Put the label of an input in the place of what it is written as."""
-    labels = Writing(spot.model).inputs
-    known = {given.formula: label for given, label in zip(spot.model.inputs, labels, strict=True)}
-
-    def put(node: Expression) -> Expression:
-        if node in known and isinstance(node, Call):
-            return known[node]
-        match node:
-            case Name() | Number():
-                return node
-            case Negation(inside):
-                return Negation(put(inside))
-            case Sum(terms):
-                return Sum(tuple(map(put, terms)))
-            case Product(factors):
-                return Product(tuple(map(put, factors)))
-            case Quotient(above, below):
-                return Quotient(put(above), put(below))
-            case Power(base, exponent):
-                return Power(put(base), exponent)
-            case Call(function, argument):
-                return Call(function, put(argument))
-
-    return put(formula)
-
-
 def equation(spot: Spot, said: Said) -> Iterator[Finding]:
     """An equation as typed, for any state: it follows from the state form."""
-    left, right = (_with_inputs(spot, formula_of(side)) for side in said.statement.sides)
     for _, t, state, inputs in _trial(spot):
         names = named_at(spot, t, state, inputs)
-        values = [formula_at(side, names, names) for side in (left, right)]
+        sides = (with_inputs(spot, formula_of(side), t) for side in said.statement.sides)
+        values = [formula_at(side, names, names) for side in sides]
         yield equal("equation", *values)
 
 
