@@ -208,7 +208,9 @@ def _trace_weights(factor: Factor, t: arb, power: int) -> list[arb]:
     field = factor.roots.field
     balls = [field.enclose(c) for c in derivative]
     weights = [arb(0)] * factor.degree
-    scale = t**power / arb(power).fac() if power else arb(1)
+    scale = arb(1)
+    for k in range(1, power + 1):
+        scale = scale * t / k  # t**power would have a logarithm, even of a ball around 0
     for root in factor.roots.enclosures():
         if root.imag < 0:
             continue

@@ -178,3 +178,12 @@ def test_equal_functions_are_equal_objects() -> None:
     first, second = exponential([[0, 1], [-5, -2]]), exponential([[0, 1], [-5, -2]])
     assert first.terms[0].residues == second.terms[0].residues
     assert first != replace(second, terms=second.terms * 2)
+
+
+def test_powers_of_a_ball_around_zero_are_finite() -> None:
+    jordan = exponential([[0, 1, 0], [0, 0, 1], [0, 0, 0]])
+    around_zero = arb(0, 2.0**-60)
+    for entry in jordan.enclosure(around_zero).entries():
+        assert entry.is_finite()
+        assert entry.rad() < arb(2) ** -59
+    assert jordan.enclosure(around_zero)[0, 1].contains(0)
