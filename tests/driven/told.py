@@ -70,7 +70,8 @@ class Told:
 
     def functions(self, at: Number, *, before: bool = False) -> dict[str, arb_series]:
         """The series of all rows at an instant, seen from after it or from before it."""
-        pieces = self.case.get("pieces", [self.case])
+        base = self.case.get("base", self.case)
+        pieces = base.get("pieces", [base])
         place = sum(1 for bound in self.bounds[1:] if _passed(at, bound, before=before))
         near = {self.record["time"]: moving(at)}
         found = self._rows(pieces[place], near)
