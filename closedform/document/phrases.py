@@ -9,6 +9,7 @@ from typing import Any
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.document.latex import cell, decimal, inline, mixed
 from closedform.document.tables import decimal_tables
+from closedform.document.units import unit_latex
 from closedform.notation.expression import Call, Expression, Name, Power, Product, number
 from closedform.notation.latex.escape import escaped
 
@@ -120,6 +121,7 @@ def quotient(several: bool) -> Side:  # noqa: FBT001  called from templates only
 
 FILTERS: dict[str, Callable[..., Any]] = {
     "text": escaped,
+    "unit": unit_latex,
     "math": inline,
     "cell": cell,
     "mixed": mixed,
