@@ -14,6 +14,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass, replace
+from functools import cached_property
 from typing import Literal
 
 from closedform.algebra.domain import Comparison, ParameterDomain, SignArgument
@@ -22,6 +23,7 @@ from closedform.algebra.exceptional import exceptional_elements
 from closedform.algebra.exponential import ExponentialMatrix, exponential_by_resolvent
 from closedform.algebra.factor_structure import FactorStructure, structure_of_factor
 from closedform.algebra.field import FieldMatrix, Scalar
+from closedform.algebra.normal_form import UnderRelation, under_relation
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.parametric_spectrum import parametric_spectrum, spectrum_under_relation
 from closedform.algebra.regimes import require_known_roots
@@ -85,6 +87,11 @@ class Branch:
     def relation(self) -> Scalar | None:
         """The polynomial that vanishes on this branch without being solved for a parameter."""
         return next((e.polynomial for e in self.equations if e.parameter is None), None)
+
+    @cached_property
+    def under(self) -> UnderRelation | None:
+        """The forms that elements have under the relation that was kept, if any."""
+        return _under(self.domain, self.relation)
 
     @property
     def values(self) -> dict[str, Scalar]:
@@ -157,10 +164,18 @@ def _left_to_others(
                 continue
             left = tuple(field.substituted(p, branch.values) for p in exceptional.polynomials)
             apart = any(p and branch.domain.sign_of(p).never_zero for p in left)
-            if not apart and left not in own:
+            if not apart and left not in own and not _excluded(field, branch, left):
                 own.add(left)
                 yield Exceptional(left, "branch", branch=other, shared=True)
         step = parents[step]
+
+
+def _excluded(field: ParameterField, branch: Branch, polynomials: tuple[Scalar, ...]) -> bool:
+    """Whether the relation of a branch keeps it away from where the polynomials vanish."""
+    if branch.relation is None:
+        return False
+    fate = _fate(field, branch, polynomials)
+    return isinstance(fate, Exceptional) and fate.fate == "excluded"
 
 
 def _under_conditions(field: ParameterField, domain: ParameterDomain) -> Start:
@@ -185,9 +200,10 @@ def _solved(field: ParameterField, matrix: FieldMatrix, start: Start, number: in
     values = {e.parameter: e.value for e in start.equations if e.parameter is not None}
     a = put_in(field, matrix, values)
     relation = next((e.polynomial for e in start.equations if e.parameter is None), None)
+    under = _under(start.domain, relation)
     spectrum = parametric_spectrum(field, a)
-    if relation is not None:
-        spectrum = spectrum_under_relation(field, spectrum, relation)
+    if under is not None:
+        spectrum = spectrum_under_relation(field, spectrum, under)
     structures = tuple(
         structure_of_factor(field, a, f.p, start.domain) if f.degree > 2 else None
         for f in spectrum.factors
@@ -195,7 +211,13 @@ def _solved(field: ParameterField, matrix: FieldMatrix, start: Start, number: in
     for factor, structure in zip(spectrum.factors, structures, strict=True):
         require_known_roots(field, factor, structure)
     exponential = exponential_by_resolvent(field, a, spectrum)
+    if under is not None:
+        exponential = under.exponential(exponential)
     return Branch(number, start.equations, start.domain, a, spectrum, exponential, structures)
+
+
+def _under(domain: ParameterDomain, relation: Scalar | None) -> UnderRelation | None:
+    return None if relation is None else under_relation(domain, relation)
 
 
 def _fate(

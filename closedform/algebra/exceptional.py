@@ -54,13 +54,16 @@ def exceptional_elements(
 ) -> Iterator[tuple[Scalar, ...]]:
     """Yield groups of polynomials: where all of a group vanish an exponential does not hold.
 
-    They are the irreducible factors of the denominators in the coefficients; of the
+    They are the irreducible factors of the denominators in coefficients and factors; of the
     discriminant of every factor with roots of their own name (for which p'(lambda) divides),
     unless its structure says where roots meet; and of the constant term of a factor whose
     frequencies divide.  Each comes once; polynomials in pi alone never vanish, and are left out.
     """
     seen: set[Scalar] = set()
-    for element in _denominators(field, exponential, structures):
+    for element in (
+        *_denominators(field, exponential, structures),
+        *_below_in_factors(field, exponential, domain),
+    ):
         for polynomial, _ in field.factored(element).factors:
             made = field.of_polynomial(polynomial)
             if made not in seen and field.number_sign(made) is None:
@@ -70,6 +73,17 @@ def exceptional_elements(
     for structure in structures:
         if structure is not None and structure.simple is not None:
             yield from structure.simple.exceptions
+
+
+def _below_in_factors(
+    field: ParameterField, exponential: ExponentialMatrix, domain: ParameterDomain
+) -> Iterator[Scalar]:
+    """The denominators in the factors, but for those of which it is plain that none vanishes."""
+    for term in exponential.terms:
+        for c in term.factor.polynomial:
+            below = field.of_polynomial(c.denom)
+            if not c.denom.is_ground and not domain.sign_of(below).never_zero:
+                yield below
 
 
 def _meeting_pairs(

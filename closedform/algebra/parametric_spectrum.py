@@ -5,10 +5,12 @@ Nothing is ordered or enclosed: where the roots lie hangs on the parameters.
 
 from __future__ import annotations
 
+from collections.abc import Callable, Sequence
 from functools import reduce
 from operator import mul
 
 from closedform.algebra.field import FieldMatrix, Polynomial, Scalar
+from closedform.algebra.normal_form import UnderRelation
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.roots import RootForm, RootSet
 from closedform.algebra.spectrum import Factor, Spectrum, block_sizes
@@ -35,22 +37,25 @@ def parametric_spectrum(field: ParameterField, matrix: FieldMatrix) -> Spectrum:
 
 
 def spectrum_under_relation(
-    field: ParameterField, spectrum: Spectrum, relation: Scalar
+    field: ParameterField, spectrum: Spectrum, relation: UnderRelation
 ) -> Spectrum:
-    """Return the spectrum where the irreducible polynomial `relation` vanishes.
+    """Return the spectrum where an irreducible polynomial vanishes, its coefficients short.
 
     There the characteristic polynomial has roots in common that it has not elsewhere.  It is
     taken apart by greatest common divisors (D. Y. Y. Yun, On square-free decomposition
-    algorithms, 1976), with numerators that `relation` divides counted as zero.  Every root
+    algorithms, 1976), with coefficients in their normal form.  Every root
     is given one block of the size of its multiplicity: the exponential is then right
     whatever the true sizes are.
     """
-    c = spectrum.characteristic_polynomial
+    normal = relation.forms[0].of_polynomial
+    elsewhere = [normal(f.p) for f in spectrum.factors]
     factors = []
-    for p, multiplicity in _squarefree_parts(field, c, relation):
-        known = [f.p for f in spectrum.factors if f.p == p]
-        parts = known or _rational_parts(field, p, spectrum, relation)
-        factors += [Factor(q, (multiplicity,), _root_set(field, q)) for q in parts]
+    for p, multiplicity in _squarefree_parts(spectrum.characteristic_polynomial, normal):
+        parts = [p] if p in elsewhere else _rational_parts(p, elsewhere, normal)
+        for part in parts:
+            known = (f.p for f, q in zip(spectrum.factors, elsewhere, strict=True) if q == part)
+            short = relation.polynomial(next(known, part))
+            factors.append(Factor(short, (multiplicity,), _root_set(field, short)))
     return _spectrum(field, sorted(factors, key=lambda f: (f.degree, str(f.p))))
 
 
@@ -87,45 +92,41 @@ def _root_set(field: ParameterField, p: Polynomial) -> RootSet:
     return RootSet(field, p, form, centre, squares)
 
 
-def _squarefree_parts(
-    field: ParameterField, polynomial: Polynomial, relation: Scalar
-) -> list[tuple[Polynomial, int]]:
-    """Return (p, m) with the product of p^m the polynomial, p squarefree, where g vanishes."""
-    common = _gcd(field, polynomial, polynomial.diff(), relation)
-    rest = polynomial.quo(common)
+Normal = Callable[[Polynomial], Polynomial]
+"""Brings the coefficients of a polynomial into their normal form: those that vanish become 0."""
+
+
+def _squarefree_parts(polynomial: Polynomial, normal: Normal) -> list[tuple[Polynomial, int]]:
+    """Return (p, m) with the product of p^m the polynomial, p squarefree."""
+    common = _gcd(polynomial, polynomial.diff(), normal)
+    rest = normal(normal(polynomial).quo(common))
     parts, multiplicity = [], 1
     while rest.degree() > 0:
-        shared = _gcd(field, rest, common, relation)
-        part = rest.quo(shared).monic()
+        shared = _gcd(rest, common, normal)
+        part = normal(rest.quo(shared).monic())
         if part.degree() > 0:
             parts.append((part, multiplicity))
-        rest, common = shared, common.quo(shared)
+        rest, common = shared, normal(common.quo(shared))
         multiplicity += 1
     return parts
 
 
-def _gcd(field: ParameterField, a: Polynomial, b: Polynomial, relation: Scalar) -> Polynomial:
-    """Euclid's algorithm; leading coefficients that vanish under the relation are dropped."""
-    a, b = _trimmed(field, a, relation), _trimmed(field, b, relation)
+def _gcd(a: Polynomial, b: Polynomial, normal: Normal) -> Polynomial:
+    """Euclid's algorithm."""
+    a, b = normal(a), normal(b)
     while not b.is_zero:
-        a, b = b, _trimmed(field, a.rem(b), relation)
-    return a.monic()
-
-
-def _trimmed(field: ParameterField, polynomial: Polynomial, relation: Scalar) -> Polynomial:
-    coefficients = polynomial.to_list()
-    kept = [field.domain.zero if vanishes_under(c, relation) else c for c in coefficients]
-    return field.polynomial(kept)
+        a, b = b, normal(a.rem(b))
+    return normal(a.monic())
 
 
 def _rational_parts(
-    field: ParameterField, p: Polynomial, spectrum: Spectrum, relation: Scalar
+    p: Polynomial, elsewhere: Sequence[Polynomial], normal: Normal
 ) -> list[Polynomial]:
     """Split off what p shares with the factors that the spectrum has elsewhere."""
     parts, rest = [], p
-    for factor in spectrum.factors:
-        shared = _gcd(field, rest, factor.p, relation)
+    for factor in elsewhere:
+        shared = _gcd(rest, factor, normal)
         if 0 < shared.degree() < rest.degree():
             parts.append(shared)
-            rest = rest.quo(shared).monic()
+            rest = normal(rest.quo(shared).monic())
     return [*parts, rest]

@@ -9,6 +9,8 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from closedform.algebra.domain import ParameterDomain
+from closedform.algebra.normal_form import UnderRelation, under_relation
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.parametric_spectrum import (
     parametric_spectrum,
@@ -33,7 +35,11 @@ def under(texts: list[str], relation: str) -> Spectrum:
     n = len(texts)
     rows = [["1" if k == i + 1 else "0" for k in range(n)] for i in range(n - 1)]
     rows.append([f"-({c})" for c in reversed(texts)])
-    return spectrum_under_relation(FIELD, spectrum(FIELD, rows), element(FIELD, relation))
+    return spectrum_under_relation(FIELD, spectrum(FIELD, rows), held(relation))
+
+
+def held(relation: str) -> UnderRelation:
+    return under_relation(ParameterDomain(FIELD, ()), element(FIELD, relation))
 
 
 @given(st.lists(st.sampled_from(RATES), min_size=1, max_size=4))
@@ -124,7 +130,7 @@ def test_factors_that_meet_in_one_root_are_split() -> None:
     """a is a root of x^2 + b x + c where a^2 + a b + c = 0; the other root is -a - b."""
     relation = element(FIELD, "a^2 + a*b + c")
     rows = [["a", "0", "0"], ["0", "0", "1"], ["1", "-c", "-b"]]
-    found = spectrum_under_relation(FIELD, spectrum(FIELD, rows), relation)
+    found = spectrum_under_relation(FIELD, spectrum(FIELD, rows), held("a^2 + a*b + c"))
     assert sorted((f.degree, f.multiplicity) for f in found.factors) == [(1, 1), (1, 2)]
     double = next(f for f in found.factors if f.multiplicity == 2)
     assert vanishes_under(double.roots.centre - element(FIELD, "a"), relation)

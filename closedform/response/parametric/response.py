@@ -147,9 +147,15 @@ def respond_in_cases(
         ]
         others = further(branch) if further is not None else None
         apart = parted(branch) if parted is not None else None
+        if branch.under is not None:
+            short = branch.under.exponential
+            state, output, others, apart = (
+                short(state),
+                *(None if part is None else short(part) for part in (output, others, apart)),
+            )
+        sought = Sought(state, output, others, apart)
         first: Case | None = None
         for regimes in product(*ways):
-            sought = Sought(state, output, others, apart)
             case = written_case(model, branch, regimes, sought, len(cases), first)
             if case is not None:
                 first = first or case

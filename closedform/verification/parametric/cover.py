@@ -135,6 +135,10 @@ def _must_not_vanish(field: ParameterField, branch: Branch) -> Iterator[Scalar]:
         for element in elements:
             yield from _factors(field, field.of_polynomial(element.denom))
         factor = term.factor
+        for c in factor.polynomial:
+            for made in _factors(field, field.of_polynomial(c.denom)):
+                if not branch.domain.sign_of(made).never_zero:
+                    yield made
         if has_known_roots(field, factor.p):
             continue  # an irreducible polynomial in numbers: its roots are simple
         if factor.degree > 2 and factor.roots.form == "even" and factor.roots.squares is not None:

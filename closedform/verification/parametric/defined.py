@@ -44,6 +44,9 @@ __all__ = [
 
 _ITEM = "formulas defined"
 
+MOST_TURNED = 12
+"""Polynomials with more terms than this are not multiplied by their opposites in a name."""
+
 
 def defined_check(response: ParametricResponse, case: Case) -> Check:
     """No divisor in the formulas of a case, and in the definitions of its names, vanishes."""
@@ -220,15 +223,22 @@ def _squares(field: ParameterField, case: Case) -> dict[str, Scalar]:
 
 
 def _with_squares(field: ParameterField, element: Scalar, squares: dict[str, Scalar]) -> Scalar:
-    """A polynomial with the squares of names put in, those that stand in even powers alone."""
+    """A polynomial that vanishes wherever the given one does, with squares of names put in.
+
+    Where a name stands in odd powers, it is the product of the given one with that of the
+    opposite name: of (w - r)(w + r) = w^2 - r^2.
+    """
     for name, square in reversed(squares.items()):
         place = field.parameters.index(name)
-        terms = dict(element.numer)
-        if element.denom != 1 or any(monomial[place] % 2 for monomial in terms):
+        if element.denom != 1:
             continue
+        if any(monomial[place] % 2 for monomial in element.numer.itermonoms()):
+            if len(element.numer) > MOST_TURNED:
+                continue
+            element *= field.substituted(element, {name: -field.symbol(name)})
         halved = {
             (*monomial[:place], monomial[place] // 2, *monomial[place + 1 :]): c
-            for monomial, c in terms.items()
+            for monomial, c in element.numer.iterterms()
         }
         own = field.of_polynomial(element.numer.ring.from_dict(halved))
         element = field.of_polynomial(field.substituted(own, {name: square}).numer)

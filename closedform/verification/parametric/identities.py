@@ -8,7 +8,7 @@ kept, zero means divisible by the relation.
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass, replace
 
 from closedform.algebra.branches import Branch
@@ -97,10 +97,10 @@ def state_checks(response: ParametricResponse, case: Case) -> Iterator[Check]:
     initial = _stated(field, [[x] for x in model.initial], branch)
     yield differential_equation_check("x' - A x = 0", case.state, branch.matrix, vanishes=vanishes)
     yield initial_value_check("x(0) = x0", case.state, initial, vanishes=vanishes)
-    yield _same("x = e^(At) x0", case.state, branch.exponential.times(initial))
+    yield _same("x = e^(At) x0", case.state, branch.exponential.times(initial), vanishes)
     if case.output is not None or model.outputs:
         weights = _stated(field, [o.weights for o in model.outputs], branch)
-        yield _same("y = C x", case.output, case.state.after(weights))
+        yield _same("y = C x", case.output, case.state.after(weights), vanishes)
 
 
 def vanishes_on(branch: Branch, element: Scalar) -> bool:
@@ -141,7 +141,12 @@ def _factors_check(response: ParametricResponse, branch: Branch) -> Check:
     )
 
 
-def _same(item: str, left: ExponentialMatrix | None, right: ExponentialMatrix) -> Check:
+def _same(
+    item: str,
+    left: ExponentialMatrix | None,
+    right: ExponentialMatrix,
+    vanishes: Callable[[Scalar], bool],
+) -> Check:
     """Two functions agree coefficient by coefficient."""
     if left is None or left.shape != right.shape:
         return Check(item, "refuted", "there are more of them, or fewer")
@@ -149,7 +154,7 @@ def _same(item: str, left: ExponentialMatrix | None, right: ExponentialMatrix) -
         if len(one.residues) != len(other.residues):
             return Check(item, "refuted", "a power of time is missing, or there is one too many")
         for found, expected in zip(one.residues, other.residues, strict=True):
-            fault = first_nonzero_over_roots(found - expected)
+            fault = first_nonzero_over_roots(found - expected, vanishes)
             if fault is not None:
                 return Check(item, "refuted", f"row {fault[0]} differs")
     return Check(item, "proved", "all coefficients agree as functions of the parameters")

@@ -42,6 +42,7 @@ def test_all_formulas_of_a_right_response_are_defined(kind: str) -> None:
     [
         ("pair", 0, "1/omega_d"),
         ("pair", 0, "x0/(4*m*k - c^2)"),
+        ("pair", 0, "1/(omega_d - k/m - 1)"),
         ("pair", 2, "exp(-t/kappa)"),
         ("pair", 0, "c/(m*delta)"),
         ("pair", 1, "1/(2*m*k - c^2)"),
