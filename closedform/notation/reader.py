@@ -40,7 +40,7 @@ from closedform.notation.expression import Expression
 from closedform.notation.jets import jet_of, spelled
 from closedform.notation.mistakes import MISTAKES
 from closedform.notation.plain import plain
-from closedform.notation.timed_mistakes import TIMED_MISTAKES, why_name, why_stray
+from closedform.notation.timed_mistakes import TIMED_MISTAKES, instead_of, why_name, why_stray
 from closedform.notation.vocabulary import Vocabulary
 
 __all__ = [
@@ -217,6 +217,9 @@ def _refusal(stop: _Stop, text: str, vocabulary: Vocabulary, place: Place) -> Fo
         case ("CHARACTER",) if found == "∞":
             return NotFiniteError(place, found)
     mistake, advice = _mistakes(vocabulary.signals)[stop.why]
+    if stop.why == ("NAME", "OPEN") and vocabulary.signals:
+        word = re.search(r"\w+(?=\s*$)", text[: stop.start])
+        advice = (instead_of(word[0]) if word else None) or advice
     return FormulaSyntaxError(place, mistake, found, advice)
 
 

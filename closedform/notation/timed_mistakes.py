@@ -11,7 +11,14 @@ from closedform.notation.expression import FUNCTIONS
 from closedform.notation.jets import PRIMES, jet_of, spelled
 from closedform.notation.vocabulary import Vocabulary
 
-__all__ = ["DIFFERENTIAL", "EQUALS_MISTAKES", "TIMED_MISTAKES", "why_name", "why_stray"]
+__all__ = [
+    "DIFFERENTIAL",
+    "EQUALS_MISTAKES",
+    "TIMED_MISTAKES",
+    "instead_of",
+    "why_name",
+    "why_stray",
+]
 
 DERIVATIVES = frozenset({"diff", "Diff", "derivative", "Derivative", "deriv", "der", "ddt"})
 INTEGRALS = frozenset({"int", "Int", "integral", "Integral", "integrate"})
@@ -89,6 +96,16 @@ TIMED_MISTAKES: tuple[tuple[str, str, tuple[str, ...]], ...] = (
 There, x depends on the time t, and k does not.
 """
 
+STEPS = frozenset({"heaviside", "unitstep", "unit_step", "stepfun", "ustep"})
+IMPULSES = frozenset({"dirac", "diracdelta", "dirac_delta", "impulse", "unitimpulse"})
+OTHERS = frozenset(
+    {
+        *("abs", "sign", "sgn", "log", "ln", "lg", "tan", "cot", "tanh", "asin", "acos", "atan"),
+        *("arcsin", "arccos", "arctan", "atan2", "max", "min", "floor", "ceil", "mod"),
+    }
+)
+"""Functions of which none is a sum of waves."""
+
 EQUALS_MISTAKES: dict[str, tuple[str, str]] = {
     "none": (
         "an equation has a sign =, and here is none",
@@ -124,6 +141,21 @@ EQUALS_MISTAKES: dict[str, tuple[str, str]] = {
     ),
 }
 """What is wrong, and what to do, where the text of an equation is no equation."""
+
+
+def instead_of(word: str) -> str | None:
+    """Return what to write for a usual function that is none here, None for another word."""
+    plain = word.lower()
+    if plain in STEPS:
+        return f"{word} is not known; write step(t - a), which is 0 before a and 1 from a on"
+    if plain in IMPULSES:
+        return f"{word} is not known; write delta(t - a) for an impulse at a"
+    if plain in OTHERS:
+        return (
+            f"{word} is not known; the functions are exp, sin, cos, sinh, cosh, sqrt, step and "
+            "delta: put what it stands for into pieces under [inputs], or a number in its place"
+        )
+    return None
 
 
 def why_stray(character: str, before: str, vocabulary: Vocabulary) -> tuple[str, ...]:

@@ -104,6 +104,21 @@ def test_each_tabulated_mistake_is_told_as_such(mistake: str, text: str) -> None
     assert caught.value.advice in str(caught.value)
 
 
+@pytest.mark.parametrize(
+    ("text", "advice"),
+    [
+        ("x = heaviside(t - 1)", "heaviside is not known; write step(t - a)"),
+        ("x = 2*Heaviside (t - 1)", "Heaviside is not known; write step(t - a)"),
+        ("x = dirac(t)", "dirac is not known; write delta(t - a)"),
+        ("x = abs(t)", "abs is not known; the functions are exp, sin"),
+    ],
+)
+def test_usual_functions_that_are_none_here_are_named(text: str, advice: str) -> None:
+    with pytest.raises(FormulaSyntaxError) as caught:
+        read_open(text)
+    assert caught.value.advice.startswith(advice)
+
+
 WRONG = [
     ("none", "x - 1", 6),
     ("none", "", 1),

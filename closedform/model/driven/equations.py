@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from fractions import Fraction
 from typing import Generic, TypeVar
 
@@ -75,10 +75,21 @@ def stated_by_equations(
         if not names:
             raise
         if isinstance(error, DelayedUnknownError):
+            if _is_determined(names[0], error.equation, zip(texts, sides, strict=True)):
+                raise
             facts = error.place, error.equation, error.term, names[0]
             raise ForgottenInputError(*facts) from None
         raise ForgottenParameterError(error.place, error.equation, error.term, names) from None
     return Statement("equations", unknowns, rows, guessed)
+
+
+def _is_determined(name: str, equation: str, stated: Iterable[tuple[str, Sides]]) -> bool:
+    """Whether another equation than this one has a name, so that it is an unknown indeed."""
+    return any(
+        " ".join(text.split()) != " ".join(equation.split())
+        and any(name == found for side in pair for found, _ in found_jets(side))
+        for text, pair in stated
+    )
 
 
 def _equation_of(name: str, sides: Sequence[Sides]) -> str:

@@ -414,3 +414,10 @@ def test_ends_of_lines_and_odd_signs_do_not_matter(tmp_path: Path) -> None:
     text = _stated(f"x{prime}{prime} = {minus}x", f"0*y{prime} = y + x(t)", initial=TWO)
     path.write_bytes(("\N{ZERO WIDTH NO-BREAK SPACE}" + text).replace("\n", "\r\n").encode())
     assert load(path).name == "bench"
+
+
+def test_dead_time_in_a_loop_is_no_forgotten_input(tmp_path: Path) -> None:
+    loop = _stated("5*y' + y = 2*u(t - 2)", "u = 3*(1 - y)", initial="{ y = 0 }")
+    assert "is an unknown at another time" in _found(tmp_path, loop)
+    forgotten = _stated("5*y' + y = 2*u(t - 2)", initial="{ y = 0 }")
+    assert "declare it in [inputs]" in _found(tmp_path, forgotten)
