@@ -24,17 +24,25 @@ of a quartic has thousands of terms, and says nothing to a reader."""
 
 
 class RootsUnknownError(InputError):
-    """An irreducible factor of high degree of which it is not known where its roots lie."""
+    """An irreducible factor of high degree of which it is not known where its roots lie.
 
-    def __init__(self, degree: int, parameters: tuple[str, ...]) -> None:
-        super().__init__(degree, parameters)
-        self.degree, self.parameters = degree, parameters
+    `model` is the name of the model that it is of, empty as long as that is not known.
+    """
+
+    def __init__(self, degree: int, parameters: tuple[str, ...], model: str = "") -> None:
+        super().__init__(degree, parameters, model)
+        self.degree, self.parameters, self.model = degree, parameters, model
+
+    def of(self, model: str) -> RootsUnknownError:
+        """Return the same error with the name of the model."""
+        return RootsUnknownError(self.degree, self.parameters, model)
 
     def __str__(self) -> str:
         names = ", ".join(self.parameters)
+        whose = f"{self.model}: " if self.model else ""
         return (
-            f"the characteristic polynomial has an irreducible factor of degree {self.degree} "
-            f"in which the parameters {names} decide how many roots are real, and no structure "
+            f"{whose}the characteristic polynomial has an irreducible factor of degree "
+            f"{self.degree} in which the parameters {names} decide how many roots are real, and no structure "
             "of the model (symmetry, a chain or a star of compartments, springs and masses) "
             "settles it, or whether two of them meet; give some of these parameters as numbers"
         )

@@ -11,7 +11,7 @@ from closedform.algebra.domain import Comparison, ParameterDomain
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import FieldMatrix
 from closedform.algebra.parameter_field import ParameterField
-from closedform.algebra.regimes import regimes_of
+from closedform.algebra.regimes import RootsUnknownError, regimes_of
 from closedform.model.parametric import ParametricModel
 from closedform.notation.expression import names_in
 from closedform.notation.plain import plain
@@ -128,6 +128,17 @@ def respond_in_cases(
     Exact:   no floating-point number takes part.  Nothing is proved yet: see `verify`.
     Raises:  RootsUnknownError where it is not known how the roots of a factor lie.
     """
+    try:
+        return _in_cases(model, further, parted)
+    except RootsUnknownError as error:
+        raise error.of(model.name) from None
+
+
+def _in_cases(
+    model: ParametricModel,
+    further: Callable[[Branch], ExponentialMatrix] | None,
+    parted: Callable[[Branch], ExponentialMatrix | None] | None,
+) -> ParametricResponse:
     field = model.field
     matrix = field.matrix([list(row) for row in model.matrix])
     initial = field.matrix([[entry] for entry in model.initial])

@@ -130,8 +130,9 @@ def test_a_model_whose_roots_are_not_known_is_refused() -> None:
         parameters={"a": "positive", "b": "positive"},
     )
     assert isinstance(made, closedform.ParametricModel)
-    with pytest.raises(RootsUnknownError, match="irreducible factor of degree 4"):
+    with pytest.raises(RootsUnknownError, match="irreducible factor of degree 4") as caught:
         respond_in_cases(made)
+    assert str(caught.value).startswith(f"{made.name}: ")
 
 
 @pytest.mark.parametrize("name", ["damped", "decay"])
