@@ -231,7 +231,8 @@ def period_formula_check(setting: Setting, written: PeriodicSolution) -> Check:
         findings,
         f"agree {AGREED} with the model carried on from period to period by exponentials in "
         f"ball arithmetic, in the first {most} of them at two instants of each part"
-        + ("" if written.count else "; more than there are terms in n, so that all do"),
+        + ("" if written.count else "; more than there are terms in n, so that all do")
+        + ("" if written.for_all_times is None else "; so does the formula for all times, in each"),
     )
 
 
