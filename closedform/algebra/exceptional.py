@@ -42,9 +42,10 @@ class RootsUnknownError(InputError):
         whose = f"{self.model}: " if self.model else ""
         return (
             f"{whose}the characteristic polynomial has an irreducible factor of degree "
-            f"{self.degree} in which the parameters {names} decide how many roots are real, and no structure "
-            "of the model (symmetry, a chain or a star of compartments, springs and masses) "
-            "settles it, or whether two of them meet; give some of these parameters as numbers"
+            f"{self.degree} in which the parameters {names} decide how many roots are real, and "
+            "no structure of the model (symmetry, a chain or a star of compartments, springs and "
+            "masses) settles it, or whether two of them meet; give some of these parameters as "
+            "numbers"
         )
 
 

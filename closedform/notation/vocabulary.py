@@ -15,7 +15,8 @@ __all__ = ["Vocabulary"]
 
 NEVER_UNKNOWN = frozenset({"e", "pi", "nan", "inf", "infinity", "infty", "oo"})
 NEVER_UNKNOWN |= {"tan", "cot", "tanh", "coth", "asin", "acos", "atan", "atan2", "arctan"}
-NEVER_UNKNOWN |= {"log", "ln", "lg", "log10", "abs", "sign", "sgn", "min", "max", "heaviside"}
+NEVER_UNKNOWN |= {"log", "ln", "lg", "log10", "abs", "sign", "sgn", "min", "max"}
+NEVER_UNKNOWN |= {"heaviside", "dirac"}
 """Numbers and functions that people mean by these names: none is taken for an unknown."""
 
 
