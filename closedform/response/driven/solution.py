@@ -113,6 +113,8 @@ class DrivenSolution:
         """
         if not self.has_one_formula:
             raise UnendingSolutionError(self.model.name)
+        if not self.periodic:
+            return self.base
         added = [own.for_all_times or () for own in self.periodic]
         return FormulaColumn(
             opened(sum_of([term for term in terms if term != ZERO] or [ZERO]))

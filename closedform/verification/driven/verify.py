@@ -36,6 +36,7 @@ from closedform.verification.driven.steady import (
     steady_checks,
 )
 from closedform.verification.driven.typed import typed_check
+from closedform.verification.driven.whole import whole_check
 from closedform.verification.driven.written import formula_check
 from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.parametric.verify import verify_cases
@@ -82,6 +83,7 @@ def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterato
     yield formula_check(setting)
     if isinstance(response.stacked, ParametricResponse):
         yield from defined_checks(response.stacked, setting)
+    repeated = []
     for single, functions, written in period_settings(response, solution):
         places = [k for k, r in enumerate(repeats) if r == functions.repeat]
         own = (*declared_check(single, places, single.last), *exact_checks(single))
@@ -90,6 +92,9 @@ def driven_checks(response: DrivenResponse, solution: DrivenSolution) -> Iterato
         yield blow_check(single, functions)
         yield period_formula_check(single, written)
         yield from periodic_checks(single, written)
+        repeated.append((single, written))
+    if repeated and solution.has_one_formula:
+        yield whole_check(setting, repeated)
 
 
 def exact_checks(setting: Setting) -> Iterator[Check]:

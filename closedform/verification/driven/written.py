@@ -94,9 +94,10 @@ def _written(setting: Setting, k: int) -> Iterator[tuple[str, _Written]]:
         pairs = zip(steps.rows(k, t, enclose), steps.free_rows(t, enclose), strict=True)
         return [a - b for a, b in pairs]
 
+    stepped = solution.base if solution.periodic else solution.solution
     kinds: list[tuple[str, Sequence[Expression], Callable[..., list[arb]]]] = [
         ("piece", solution.pieces[k], whole),
-        ("form with unit steps", solution.base, whole),
+        ("form with unit steps", stepped, whole),
         ("free part", solution.of(functions.free), free),
         ("forced part", solution.in_interval(functions.forced[k]), forced),
     ]

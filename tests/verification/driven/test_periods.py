@@ -12,6 +12,7 @@ from flint import arb, ctx
 
 from closedform.notation.expression import Call, Number, Sum
 from closedform.notation.reader import read_formula
+from closedform.notation.shown import FormulaColumn
 from closedform.response.driven.response import respond_driven
 from closedform.verification.driven.periods import (
     blow_check,
@@ -88,6 +89,26 @@ def test_the_formula_for_all_times_is_checked_in_every_period() -> None:
         gone = Call("step", read_formula(f"t - {5 * k}/2 - 1", names=frozenset("t")))
         spoiled = replace(written, for_all_times=(Sum((first, gone)), *others))
         assert period_formula_check(setting, spoiled).outcome == "refuted"
+
+
+def test_one_formula_for_all_times_is_the_sum_of_its_parts() -> None:
+    mapping = {
+        "equations": ["x' = -x + p", "y' = x - 2*y + q"],
+        "inputs": {
+            "p": {"is": "3*delta(t)", "period": "2", "count": 2},
+            "q": {"pieces": [{"from": "1", "to": "2", "is": "5"}], "period": "3", "count": 2},
+        },
+        "initial": {"x": 1, "y": 2},
+    }
+    response = respond_driven(stated(mapping))
+    assert verify_driven(response).holds
+    whole = response.solutions[0].solution
+    for k in range(7):
+        spoiled = with_solution(response)
+        late = Call("step", read_formula(f"t - {k}", names=frozenset("t")))
+        first = Sum((whole[0], late))
+        spoiled.solutions[0].__dict__["solution"] = FormulaColumn((first, *whole[1:]))
+        assert set(refuted(spoiled)) == {"one formula for all times"}
 
 
 @each_kind
