@@ -65,7 +65,7 @@ def test_equations_are_printed_as_typed_with_dots() -> None:
 
 
 def test_what_an_input_means_is_said() -> None:
-    assert "The input (force, N) is" in text_of("mount")
+    assert r"The input (force, $\mathrm{N}$) is" in text_of("mount")
 
 
 def test_the_unit_step_is_explained_once() -> None:

@@ -60,6 +60,7 @@ SIDES: list[tuple[Side, str]] = [
     (S("dotted", argument=T, letter="q", order=2), r"\ddot{\boldsymbol{q}}(t)"),
     (S("dotted", letter="x_hat"), r"\dot{\widehat{\boldsymbol{x}}}"),
     (S("matrix", letter="A_hat"), r"\widehat{\boldsymbol{A}}"),
+    (S("one-sided", ("-",), T, "x_1"), r"x_{1}(t^{-})"),
     (S("step", argument=add("t", neg("T"))), r"\varepsilon(t - T)"),
     (
         S("blocks", ("2",), parts=(S("matrix"), S("zero"), q(0), q(1))),

@@ -217,7 +217,9 @@ def _printed(steps: Sequence[Step]) -> list[Step]:
     def shown(step: Step) -> bool:
         if step.kind == "stability":
             return bool(step.facts["generic"])
-        return step.kind != "substitution" or 0 in _tuple(step.facts["cases"])
+        return step.kind not in ("substitution", "period_substitution") or 0 in _tuple(
+            step.facts["cases"]
+        )
 
     return [step if shown(step) else replace(step, depth="full") for step in steps]
 

@@ -232,24 +232,23 @@ def _argument(writing: Writing, sinusoid: Sinusoid) -> Expression:
 
 
 def _phase(sinusoid: Sinusoid, symbol: Symbol) -> dict[str, Any]:
-    """The phase by its arc tangent and its quadrant; else by its sine and cosine.
+    """The phase by its arc tangent, where that is all; else by a point and its quadrant.
 
     It is that of a sine where sines drive, so that it is the lag of the textbooks.
     """
     angle = sinusoid.phase if sinusoid.sine_phase is None else sinusoid.sine_phase
-    value: Side = Symbol("angle of", parts=(angle.above, angle.beside))
+    value = Symbol("angle of", parts=(angle.above, angle.beside))
     if angle.arc is not None:
         turn, direction, ratio = angle.arc
         pi = Symbol("turn", (str(turn.numerator), str(turn.denominator)))
         if direction == 0:
             value = pi
-        else:
-            sign = "+" if direction > 0 else "-"
-            value = Symbol("arc", (sign,), parts=(pi, ratio) if turn else (ratio,))
+        elif not turn:
+            value = Symbol("arc", ("+" if direction > 0 else "-",), parts=(ratio,))
     return {
         "statement": Statement("phase", (symbol, value)),
         "place": angle.place,
-        "open": angle.arc is None,
+        "open": value.kind == "angle of",
     }
 
 

@@ -4,6 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from closedform.derivation.driven.indices import (
+    base_indices,
+    moves_apart,
+    repeated_indices,
+    whole_statement,
+)
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.step import Side, Statement, Step, Symbol
 from closedform.model.driven.signal import Repeat
@@ -23,11 +29,17 @@ def periodic_steps(
     writing: Writing, solution: DrivenSolution, facts: dict[str, object]
 ) -> Iterator[Step]:
     """State, for inputs that repeat, the response in the n-th period, and what it tends to."""
-    base = any(part.summands for part in solution.functions.intervals)
+    base = moves_apart(solution)
     repeats = repeating(writing.model)
     for place, own in enumerate(solution.periodic):
+        indices = repeated_indices(solution, place)
+        steady = (*indices, "steady")
+        last = place + 1 == len(solution.periodic)
         told = {
             **facts,
+            "response": writing.response(*indices),
+            "apart": writing.response(*base_indices(solution)),
+            "whole_sum": whole_statement(writing, solution) if last else None,
             "place": place,
             "count": own.count,
             "period": Statement("period", (own.period,)),
@@ -40,12 +52,16 @@ def periodic_steps(
             "begins": None
             if own.begins is None
             else _states(writing, own, own.begins, "steady start"),
-            "stretches": [_stretch(writing, own, s, "in period") for s in own.stretches],
-            "steady": [_stretch(writing, own, s, "steady period") for s in own.steady or ()],
+            "stretches": [_stretch(writing, own, s, "in period", indices) for s in own.stretches],
+            "steady": [
+                _stretch(writing, own, s, "steady period", steady) for s in own.steady or ()
+            ],
             "after": None
             if own.after is None
             else [
-                Statement("after the periods", (_function(writing, name), formula))
+                Statement(
+                    "after the periods", (Symbol("scalar", indices, writing.t, name), formula)
+                )
                 for name, formula in zip(writing.model.rows, own.after, strict=True)
             ],
             "provided": [Statement("divisor", (formula,)) for formula in own.provided],
@@ -57,10 +73,6 @@ def periodic_steps(
             ],
         }
         yield Step("periodic", (), told, ("driven_transition",), "summary")
-
-
-def _function(writing: Writing, name: str) -> Symbol:
-    return Symbol("scalar", ("rep",), writing.t, name)
 
 
 def _local(writing: Writing, own: PeriodicSolution) -> Statement:
@@ -106,14 +118,18 @@ def _end(writing: Writing, index: str) -> Symbol:
 
 
 def _stretch(
-    writing: Writing, own: PeriodicSolution, stretch: PeriodStretch, says: str
+    writing: Writing,
+    own: PeriodicSolution,
+    stretch: PeriodStretch,
+    says: str,
+    indices: tuple[str, ...],
 ) -> dict[str, object]:
     local = Name(own.local)
     when = Symbol("interval", ("both",), local, parts=(stretch.start, stretch.end))
     return {
         "when": when,
         "statements": [
-            Statement(says, (_function(writing, name), formula))
+            Statement(says, (Symbol("scalar", indices, writing.t, name), formula))
             for name, formula in zip(writing.model.rows, stretch.rows, strict=True)
         ],
     }

@@ -10,7 +10,9 @@ from closedform.derivation.driven.closing_steps import (
     steady_step,
     transient_step,
 )
+from closedform.derivation.driven.indices import moves_apart
 from closedform.derivation.driven.join_steps import joins_step
+from closedform.derivation.driven.period_substitution import period_substitution_steps
 from closedform.derivation.driven.periodic_steps import periodic_steps
 from closedform.derivation.driven.solution_steps import (
     driven_solution_step,
@@ -38,12 +40,12 @@ def _steps(
     response: DrivenResponse, solution: DrivenSolution, facts: dict[str, object]
 ) -> Iterator[Step | None]:
     writing = Writing(response.model)
-    if not solution.periodic or _moves(solution):
+    if not solution.periodic or moves_apart(solution):
         yield particular_step(writing, solution, facts)
         yield conditions_step(writing, solution, facts)
         yield jumps_step(writing, solution, facts)
         yield driven_solution_step(writing, solution, facts)
-        if solution.points is None:
+        if solution.points is None and not solution.periodic:
             yield split_step(writing, solution, facts)
     yield from periodic_steps(writing, solution, facts)
     if solution.points is None:  # else nothing is let go in time: both ends are given
@@ -53,8 +55,4 @@ def _steps(
         yield transient_step(writing, solution, facts)
         yield from substitution_steps(response, solution, facts)
         yield joins_step(writing, solution, facts)
-
-
-def _moves(solution: DrivenSolution) -> bool:
-    """Whether anything but the inputs that repeat moves the states."""
-    return any(interval.summands for interval in solution.functions.intervals)
+    yield from period_substitution_steps(writing, solution, facts)

@@ -9,6 +9,7 @@ from closedform.algebra.field import Scalar
 from closedform.algebra.parameter_field import ParameterField
 from closedform.algebra.waves import ONE as UNIT
 from closedform.algebra.waves import ConstantColumns, gathered_columns
+from closedform.derivation.driven.indices import base_indices
 from closedform.derivation.driven.writing import A_HAT, Writing, interval, unboxed
 from closedform.derivation.parametric.case_steps import case_conditions_of
 from closedform.derivation.step import Depth, Matrix, Side, Statement, Step, Symbol
@@ -232,7 +233,7 @@ def _shape(writing: Writing, solution: DrivenSolution, rows: Sequence[dict[str, 
     right: Side = Symbol("zero") if not parts else parts[0]
     if len(parts) > 1:
         right = Symbol("sum", parts=tuple(parts))
-    return Statement("shape", (writing.response(), right))
+    return Statement("shape", (writing.response(*base_indices(solution)), right))
 
 
 def driven_solution_step(
@@ -241,10 +242,10 @@ def driven_solution_step(
     """State every row for all times: interval by interval, and with unit steps."""
     model, functions = writing.model, solution.functions
     several = len(functions.intervals) > 1
-    shown = _shown(writing)
+    shown, indices = _shown(writing), base_indices(solution)
     rows: list[dict[str, object]] = []
     for row in shown:
-        symbol = writing.function(model.rows[row])
+        symbol = Symbol("scalar", indices, writing.t, model.rows[row])
         if not several:
             statement = Statement("driven solution", (symbol, solution.pieces[0][row]))
             rows.append({"whole": None, "steps": statement, "lines": ()})
@@ -257,6 +258,7 @@ def driven_solution_step(
                 {
                     "place": place,
                     "when": writing.within(place),
+                    "zero": piece[row] == ZERO,
                     "statement": Statement("in interval", (symbol, piece[row])),
                 }
             )
@@ -267,6 +269,8 @@ def driven_solution_step(
         **facts,
         "rows": rows,
         "several": several,
+        "indices": indices,
+        "apart": bool(indices),
         "shown": len(shown),
         "all": len(model.rows),
         "jumps": any(switch.jump for switch in functions.switches),

@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 
 from closedform.algebra.surds import SurdSum
+from closedform.derivation.driven.indices import base_indices, moves_apart, repeated_indices
 from closedform.derivation.driven.writing import Writing, interval
 from closedform.derivation.parametric.case_steps import case_conditions_of
 from closedform.derivation.parametric.numbers_step import APPROXIMATELY, value_shown
 from closedform.derivation.result_steps import exact_number
 from closedform.derivation.step import Side, Statement, Step, Symbol
-from closedform.notation.expression import Expression, Name
+from closedform.notation.expression import ZERO, Expression, Name
 from closedform.response.driven.numbers import DrivenNumbersAt
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.driven.sampling import default_instants, sampled_rows
@@ -74,7 +75,8 @@ def _set(
     if not isinstance(stacked, ParametricResponse):
         raise TypeError("a model without parameters has no values to put in")
     writing, rows = Writing(response.model), response.model.rows
-    case = stacked.cases[numbers.case]
+    case, solution = stacked.cases[numbers.case], response.solutions[numbers.case]
+    base = base_indices(solution)
     shown = rows[:LARGEST_WRITTEN_OUT]
     return {
         "label": numbers.label,
@@ -90,14 +92,41 @@ def _set(
             {"name": Name(q.name), "decimal": q.decimal, "exact": q.exact is not None}
             for q in numbers.quantities
         ],
-        "formulas": []
-        if any(given.signal.repeat for given in response.model.inputs)
-        else [_in_numbers(writing, numbers, k, name) for k, name in enumerate(shown)],
+        "formulas": [_in_numbers(writing, numbers, k, name, base) for k, name in enumerate(shown)]
+        if moves_apart(solution) or not solution.periodic
+        else [],
+        "periods": [
+            {"place": k, "number": Name(own.number), "parts": parts}
+            for k, own in enumerate(solution.periodic)
+            for parts in [list(_periods_in_numbers(writing, solution, numbers, k))]
+        ],
         "rows": [
             [exact_number(time), *row]
             for time, row in zip(numbers.times, numbers.rows, strict=True)
         ],
     }
+
+
+def _periods_in_numbers(
+    writing: Writing, solution: DrivenSolution, numbers: DrivenNumbersAt, place: int
+) -> Iterator[dict[str, object]]:
+    """The n-th period, part by part, with its numbers in place."""
+    local = Name(solution.periodic[place].local)
+    indices = repeated_indices(solution, place)
+    for part in numbers.periods[place]:
+        bounds = (part.start.formula, part.end.formula)
+        rounded = any(row.rounded for row in (*part.rows, part.start, part.end))
+        yield {
+            "when": Symbol("interval", ("both",), local, parts=bounds),
+            "statements": [
+                Statement(
+                    "period in numbers",
+                    (Symbol("scalar", indices, writing.t, name), row.formula),
+                    APPROXIMATELY if rounded else "=",
+                )
+                for name, row in zip(writing.model.rows, part.rows, strict=True)
+            ][:LARGEST_WRITTEN_OUT],
+        }
 
 
 def _value_formula(value: SurdSum) -> Expression:
@@ -106,10 +135,10 @@ def _value_formula(value: SurdSum) -> Expression:
 
 
 def _in_numbers(
-    writing: Writing, numbers: DrivenNumbersAt, row: int, name: str
+    writing: Writing, numbers: DrivenNumbersAt, row: int, name: str, indices: tuple[str, ...]
 ) -> dict[str, object]:
     """A row as a whole, and interval by interval where there are several."""
-    symbol = writing.function(name)
+    symbol = Symbol("scalar", indices, writing.t, name)
     pieces = [piece[row] for piece in numbers.pieces]
     rounded = any(p.rounded for p in pieces) or any(at.rounded for at in numbers.instants)
     relation = APPROXIMATELY if rounded else "="
@@ -124,6 +153,7 @@ def _in_numbers(
         when = interval(writing.t, numbers.instants[place].formula, end)
         parts += [piece.formula, when]
         line = Statement("in numbers", (symbol, piece.formula), relation)
-        lines.append({"place": place, "when": when, "statement": line})
+        zero = piece.formula == ZERO
+        lines.append({"place": place, "when": when, "zero": zero, "statement": line})
     whole = Statement("in numbers", (symbol, Symbol("cases", parts=tuple(parts))), relation)
     return {"whole": whole, "lines": lines}

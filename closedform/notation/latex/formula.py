@@ -118,6 +118,12 @@ def _factor(expression: Expression, style: Style) -> Box:
             # a sum is easier to read beside a fraction than on top of it
             front = Quotient(product(factors[:-1]), below)
             return _product(Product((front, factors[-1])), style)
+        case Quotient(above, below) if style is Style.DISPLAY and _has_fraction_of_functions(above):
+            # fractions on top of one another would be too small to read
+            first = next(f for f in factors_of(above) if _holds_fraction(f))
+            others = list(factors_of(above))
+            others.remove(first)
+            return _product(Product((Quotient(product(others), below), first)), style)
         case Quotient(above, below):
             if style >= Style.SCRIPT:
                 return _slashed(above, below, style)
@@ -126,6 +132,22 @@ def _factor(expression: Expression, style: Style) -> Box:
             return _power(base, exponent, style)
         case Call(function, argument):
             return _call(function, argument, style, bare=False)
+
+
+def _has_fraction_of_functions(above: Expression) -> bool:
+    """Whether one factor of a numerator is a sum with a fraction that is more than a number."""
+    return any(map(_holds_fraction, factors_of(above)))
+
+
+def _holds_fraction(factor: Expression) -> bool:
+    if not isinstance(factor, Sum):
+        return False
+    terms = (signed(term)[1] for term in factor.terms)
+    parts = (part for term in terms for part in factors_of(term))
+    return any(
+        _holds_fraction(p) or (isinstance(p, Quotient) and not isinstance(p.numerator, Number))
+        for p in parts
+    )
 
 
 def _number(value: Fraction, style: Style, *, small: bool) -> Box:

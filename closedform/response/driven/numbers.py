@@ -22,6 +22,7 @@ from closedform.response.driven.exact_sum import exact_value
 from closedform.response.driven.functions import Interval
 from closedform.response.driven.in_field import InField
 from closedform.response.driven.instants import suitable_instants
+from closedform.response.driven.period_formulas import PeriodicSolution
 from closedform.response.driven.put_in import put_in, with_constants
 from closedform.response.driven.response import DrivenResponse, DrivenSolution
 from closedform.response.driven.written_values import written_balls
@@ -31,7 +32,7 @@ from closedform.response.parametric.numbers import QuantityAt, case_at
 from closedform.response.parametric.response import ParametricResponse
 from closedform.response.sampling import surd_decimal
 
-__all__ = ["DrivenNumbersAt", "driven_numbers_at", "driven_numbers_of"]
+__all__ = ["DrivenNumbersAt", "PeriodNumbers", "driven_numbers_at", "driven_numbers_of"]
 
 
 @dataclass(frozen=True)
@@ -41,7 +42,7 @@ class DrivenNumbersAt:
     `case` is the place of the case that holds, from 0.  `instants` are the start and the
     switchings, in numbers.  Shapes: `pieces` has a formula in the time alone for each
     interval and, in it, each row of the model; `rows` has a decimal for each of `times`
-    and, in it, each row.
+    and, in it, each row; `periods` has the parts of a period for each way to repeat.
     """
 
     label: str
@@ -52,6 +53,16 @@ class DrivenNumbersAt:
     pieces: tuple[tuple[InNumbers, ...], ...]
     times: tuple[SurdSum, ...]
     rows: tuple[tuple[str, ...], ...]
+    periods: tuple[tuple[PeriodNumbers, ...], ...] = ()
+
+
+@dataclass(frozen=True)
+class PeriodNumbers:
+    """A formula per row, in local time and n, between two local times of the n-th period."""
+
+    start: InNumbers
+    end: InNumbers
+    rows: tuple[InNumbers, ...]
 
 
 def driven_numbers_of(response: DrivenResponse, *, digits: int) -> tuple[DrivenNumbersAt, ...]:
@@ -115,6 +126,7 @@ def driven_numbers_at(
         pieces,
         instants,
         tuple(_row(solution, known, exact, t, digits) for t in instants),
+        tuple(writer.period(own) for own in solution.periodic),
     )
 
 
@@ -138,6 +150,30 @@ class _Writer:
         """Return an element of the field as a number."""
         formula, time = element_formula(self.field, element), self.solution.model.time
         return in_numbers(formula, self.known, time, self.digits)
+
+    def period(self, own: PeriodicSolution) -> tuple[PeriodNumbers, ...]:
+        """Return the n-th period of what one way to repeat adds."""
+        found = self._period(own)
+        if any(row.rounded for part in found for row in part.rows):
+            return replace(self, decimals=True)._period(own)  # noqa: SLF001  of this class
+        return found
+
+    def _period(self, own: PeriodicSolution) -> tuple[PeriodNumbers, ...]:
+        known, digits, counted = self.known, self.digits, (own.number,)
+
+        def written(formula: Expression) -> InNumbers:
+            return in_numbers(
+                formula, known, own.local, digits, decimals=self.decimals, others=counted
+            )
+
+        return tuple(
+            PeriodNumbers(
+                in_numbers(part.start, known, own.local, digits),
+                in_numbers(part.end, known, own.local, digits),
+                tuple(map(written, part.rows)),
+            )
+            for part in own.stretches
+        )
 
     def formula(self, row: int, interval: Interval) -> InNumbers:
         """Return what an interval gives for a row."""

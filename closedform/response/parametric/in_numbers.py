@@ -40,9 +40,10 @@ CLOSE = 10
 
 @dataclass(frozen=True)
 class _Exponential:
-    """e^(rate t), the rate a formula without the time."""
+    """e^(rate t), the rate a formula without the time; `variable` is t or another that is kept."""
 
     rate: Expression
+    variable: Name
 
 
 @dataclass(frozen=True)
@@ -92,7 +93,13 @@ class InNumbers:
 
 
 def in_numbers(
-    formula: Expression, known: Known, time: str, digits: int, *, decimals: bool = False
+    formula: Expression,
+    known: Known,
+    time: str,
+    digits: int,
+    *,
+    decimals: bool = False,
+    others: tuple[str, ...] = (),
 ) -> InNumbers:
     """Return a formula of a case with the values put in and the arithmetic done.
 
@@ -101,19 +108,21 @@ def in_numbers(
 
     Every number is rational and exact, if its decimal or its numerator and denominator have
     up to `digits` digits, and else correctly rounded to them.  Where one is rounded all are
-    decimals; so they are with `decimals`, for a formula that stands beside others.
+    decimals; so they are with `decimals`, for a formula that stands beside others.  `others`
+    are names that stay beside the time, such as the number of a period.
 
     Raises UnsettledError for a number that is 0 without this being known exactly.
     """
-    writer = _Writer(known, time, digits, decimals=decimals)
+    kept = (time, *others)
+    writer = _Writer(known, kept, digits, decimals=decimals)
     part = writer.parted(formula)
     if writer.has_close_rates:
-        writer = _Writer(known, time, digits, splits=False, decimals=decimals)
+        writer = _Writer(known, kept, digits, splits=False, decimals=decimals)
         part = writer.parted(formula)
     written = writer.written(part)
     rounded = bool(writer.rounded & names_in(written))
     if rounded and not decimals:
-        return in_numbers(formula, known, time, digits, decimals=True)
+        return in_numbers(formula, known, time, digits, decimals=True, others=others)
     return InNumbers(written, rounded)
 
 
@@ -137,13 +146,14 @@ class _Writer:
     def __init__(
         self,
         known: Known,
-        time: str,
+        kept: tuple[str, ...],
         digits: int,
         *,
         splits: bool = True,
         decimals: bool = False,
     ) -> None:
-        self.known, self.time, self.digits, self.splits = known, time, digits, splits
+        self.known, self.digits, self.splits = known, digits, splits
+        self.kept = frozenset(kept)
         self.decimals = decimals
         self.rounded: set[str] = set()
         self.has_close_rates = False
@@ -153,14 +163,14 @@ class _Writer:
 
         The weight is a formula without the time that is not worked out yet.
         """
-        if self.time not in names_in(formula):
+        if not self._moves(formula):
             return _Part(formula)
         match formula:
             case Negation(operand):
                 return self.parted(operand).times(Negation(ONE))
             case Product(factors):
                 return self._product([self.parted(factor) for factor in factors])
-            case Quotient(above, below) if self.time not in names_in(below):
+            case Quotient(above, below) if not self._moves(below):
                 return self.parted(above).times(Quotient(ONE, below))
             case Call("exp", argument):
                 return self._exponential(argument)
@@ -181,26 +191,37 @@ class _Writer:
 
     def _exponential(self, argument: Expression) -> _Part:
         part = self.parted(argument)
-        if part.functions != (Name(self.time),):
-            return _Part(ONE, (Call("exp", self.written(part)),))
-        return self._growing(part.weight)
+        match part.functions:
+            case (Name() as variable,):
+                return self._growing(part.weight, variable)
+        return _Part(ONE, (Call("exp", self.written(part)),))
 
-    def _growing(self, rate: Expression) -> _Part:
+    def _moves(self, formula: Expression) -> bool:
+        """Whether the time, or another name that stays, stands in a formula."""
+        return not self.kept.isdisjoint(names_in(formula))
+
+    def _growing(self, rate: Expression, variable: Name) -> _Part:
         """Return e^(rate t), with one way to write a rate that is known exactly."""
         value = self.known.value(rate)
         if value is None:
-            return _Part(ONE, (_Exponential(rate),))
-        return _Part(ONE, () if value.is_zero else (_Exponential(surd_formula(value)),))
+            return _Part(ONE, (_Exponential(rate, variable),))
+        return _Part(ONE, () if value.is_zero else (_Exponential(surd_formula(value), variable),))
 
     def _product(self, parts: Sequence[_Part]) -> _Part:
         """Multiply; exponentials become one, also with those in the terms of a sum."""
         weight = product(part.weight for part in parts)
         functions = [function for part in parts for function in part.functions]
-        rates = [f.rate for f in functions if isinstance(f, _Exponential)]
-        if len(rates) > 1:
-            self.has_close_rates |= self._is_small(rates[1], rates[0])
+        rates: dict[Name, list[Expression]] = {}
+        for function in functions:
+            if isinstance(function, _Exponential):
+                rates.setdefault(function.variable, []).append(function.rate)
+        if any(len(several) > 1 for several in rates.values()):
             functions = [f for f in functions if not isinstance(f, _Exponential)]
-            functions += self._growing(Sum(tuple(rates))).functions
+            for variable, several in rates.items():
+                if len(several) > 1:
+                    self.has_close_rates |= self._is_small(several[1], several[0])
+                total = several[0] if len(several) == 1 else Sum(tuple(several))
+                functions += self._growing(total, variable).functions
         functions.sort(key=lambda f: not isinstance(f, Name | Power))  # t e^(-t)
         for function in functions:
             if rates and isinstance(function, _Terms) and function.has_exponential:
@@ -247,7 +268,7 @@ class _Writer:
 
     def _function(self, function: Expression | _Exponential) -> Expression:
         if isinstance(function, _Exponential):
-            return Call("exp", self._weighted(function.rate, Name(self.time)))
+            return Call("exp", self._weighted(function.rate, function.variable))
         return function
 
     def _weighted(self, weight: Expression, function: Expression | None) -> Expression:

@@ -80,3 +80,9 @@ def test_a_formula_is_printed_once_for_all_its_arguments() -> None:
     assert inputs == [
         Statement("input", (Writing(model).function("u"), model.inputs[0].definition))
     ]
+
+
+@pytest.mark.parametrize("use", USES)
+def test_no_two_rows_of_the_stacked_model_have_one_name(use: str) -> None:
+    states = stated(USES[use]).stacked.states
+    assert len(set(states)) == len(states)

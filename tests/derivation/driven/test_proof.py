@@ -126,7 +126,7 @@ def test_every_statement_that_is_altered_is_refused(
     kept = []
     for step in steps:
         for path, statement in statements_in(step):
-            if PROVERS[statement.says] is within and statement.says != "in numbers":
+            if PROVERS[statement.says] is within and "in numbers" not in statement.says:
                 continue
             kept += [
                 (step.kind, statement.says, wrong.sides)

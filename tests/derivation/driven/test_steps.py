@@ -29,6 +29,8 @@ OWN = {
     "transient",
     "substitution",
     "periodic",
+    "period_substitution",
+    "joins",
     "driven_values",
     "driven_numbers",
 }

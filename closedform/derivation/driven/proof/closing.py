@@ -163,7 +163,7 @@ def stability(spot: Spot, step: Step) -> Iterator[Finding]:
 
 def steady(spot: Spot, said: Said) -> Iterator[Finding]:
     """Steady and transient part add up to the true motion."""
-    row = row_of(spot, said.statement.sides[0], index="steady")
+    row = row_of(spot, said.statement.sides[0], "steady")
     if row is None:
         yield Fault("steady state", "it is of no state and no output of the model")
         return
@@ -181,7 +181,7 @@ def steady(spot: Spot, said: Said) -> Iterator[Finding]:
 
 def transient(spot: Spot, said: Said) -> Iterator[Finding]:
     """The transient part decays: after many time constants nothing is left."""
-    row = row_of(spot, said.statement.sides[0], index="transient")
+    row = row_of(spot, said.statement.sides[0], "transient")
     if row is None:
         yield Fault("transient", "it is of no state and no output of the model")
         return
@@ -213,7 +213,7 @@ def _decaying(spot: Spot) -> list[arb]:
 def by_amplitude(spot: Spot, said: Said) -> Iterator[Finding]:
     """Mean value and sinusoids by amplitude and phase, against the steady state in print."""
     symbol, side = said.statement.sides
-    row = row_of(spot, symbol, index="steady")
+    row = row_of(spot, symbol, "steady")
     if row is None:
         yield Fault("steady state", "it is of no state and no output of the model")
         return

@@ -7,6 +7,7 @@ from typing import Any
 
 from flint import acb, acb_mat, acb_series
 
+from closedform.derivation.driven.indices import base_indices
 from closedform.derivation.driven.proof.spot import SERIES, Spot
 from closedform.derivation.driven.proof.values import (
     NoPieceError,
@@ -147,7 +148,9 @@ def shape(spot: Spot, said: Said) -> Iterator[Finding]:
     """x(t) = x_p(t) + sum of steps times e^(A (t - a_j)) h_j, with x_p and h_j in print."""
     left, right = said.statement.sides
     writing = Writing(spot.model)
-    yield from whether(left == writing.response(), "solution", "of something else")
+    yield from whether(
+        left == writing.response(*base_indices(spot.solution)), "solution", "of something else"
+    )
     parts = right.parts if isinstance(right, Symbol) and right.kind == "sum" else (right,)
     n = spot.a.nrows()
     jumps = {row["place"]: row["statement"].sides[1] for row in _rows(said)}
@@ -193,10 +196,9 @@ def _summand(
     return state
 
 
-def row_of(spot: Spot, symbol: Side, *, index: str = "") -> int | None:
-    """Return the place of the row that a function is, with an index perhaps; None for none."""
+def row_of(spot: Spot, symbol: Side, *indices: str) -> int | None:
+    """Return the place of the row that a function is, with these indices; None for none."""
     model = spot.model
-    indices = (index,) if index else ()
     if not isinstance(symbol, Symbol) or symbol.kind != "scalar" or symbol.indices != indices:
         return None
     if symbol.argument != Name(model.time) or symbol.letter not in model.rows or symbol.order:
@@ -206,24 +208,27 @@ def row_of(spot: Spot, symbol: Side, *, index: str = "") -> int | None:
 
 def solution(spot: Spot, said: Said) -> Iterator[Finding]:
     """A row of the solution for all times, in pieces or with unit steps."""
-    yield from _function(spot, said, spot.places, forced=False)
+    own = base_indices(spot.solution)
+    yield from _function(spot, said, spot.places, forced=False, indices=own)
 
 
 def in_interval(spot: Spot, said: Said) -> Iterator[Finding]:
     """A row of the solution in one interval."""
-    yield from _function(spot, said, range(said.row["place"], said.row["place"] + 1), forced=False)
+    places = range(said.row["place"], said.row["place"] + 1)
+    own = base_indices(spot.solution)
+    yield from _function(spot, said, places, forced=False, indices=own)
 
 
 def forced(spot: Spot, said: Said) -> Iterator[Finding]:
     """The response from rest."""
-    yield from _function(spot, said, spot.places, forced=True, index="forced")
+    yield from _function(spot, said, spot.places, forced=True, indices=("forced",))
 
 
 def _function(
-    spot: Spot, said: Said, places: range, *, forced: bool, index: str = ""
+    spot: Spot, said: Said, places: range, *, forced: bool, indices: tuple[str, ...] = ()
 ) -> Iterator[Finding]:
     symbol, side = said.statement.sides
-    row = row_of(spot, symbol, index=index)
+    row = row_of(spot, symbol, *indices)
     if row is None:
         yield Fault(said.statement.says, "it is of no state and no output of the model")
         return
@@ -263,7 +268,7 @@ def join(spot: Spot, said: Said) -> Iterator[Finding]:
 def free(spot: Spot, said: Said) -> Iterator[Finding]:
     """The response to the initial values alone."""
     symbol, formula = said.statement.sides
-    row = row_of(spot, symbol, index="free")
+    row = row_of(spot, symbol, "free")
     if row is None:
         yield Fault("free response", "it is of no state and no output of the model")
         return

@@ -7,10 +7,13 @@ from typing import Any
 
 from flint import acb, acb_mat
 
+from closedform.derivation.driven.indices import repeated_indices, whole_statement
+from closedform.derivation.driven.period_substitution import indexed
 from closedform.derivation.driven.periodic_steps import recursion
 from closedform.derivation.driven.proof.motion import row_of
 from closedform.derivation.driven.proof.period_spot import PeriodSpot, periods_of
 from closedform.derivation.driven.proof.spot import Spot
+from closedform.derivation.driven.proof.stated import named_at
 from closedform.derivation.driven.proof.values import column_at, equal
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import Said
@@ -28,10 +31,13 @@ __all__ = [
     "local_time",
     "one_period",
     "period",
+    "period_balance",
     "period_recursion",
+    "period_term",
     "steady_equation",
     "steady_period",
     "steady_start",
+    "whole",
 ]
 
 _TRIED = (1, 2, 3, 7)
@@ -43,6 +49,11 @@ def _own(spot: Spot, said: Said) -> PeriodSpot:
     if not isinstance(place, int):
         raise TypeError("an input repeats in one of the ways that the model has")
     return periods_of(spot)[place]
+
+
+def _indices(spot: Spot, said: Said) -> tuple[str, ...]:
+    place = said.step.facts["place"]
+    return repeated_indices(spot.solution, place if isinstance(place, int) else 0)
 
 
 def _periods(own: PeriodSpot) -> list[int]:
@@ -58,8 +69,8 @@ def _letter(said: Said) -> str:
 
 
 def _local_name(said: Said) -> str:
-    statement: Any = said.step.facts["local"]
-    return str(statement.sides[0].text)
+    item: Any = said.step.facts["local"]
+    return str(item.text if isinstance(item, Name) else item.sides[0].text)
 
 
 def period(spot: Spot, said: Said) -> Iterator[Finding]:
@@ -129,7 +140,7 @@ def _states(spot: Spot, said: Said, expected: acb_mat, names: dict[str, Any]) ->
 def in_period(spot: Spot, said: Said) -> Iterator[Finding]:
     """A row in a part of the n-th period."""
     own = _own(spot, said)
-    row = row_of(spot, said.statement.sides[0], index="rep")
+    row = row_of(spot, said.statement.sides[0], *_indices(spot, said))
     if row is None:
         yield Fault("in a period", "it is of no state and no output of the model")
         return
@@ -156,7 +167,7 @@ def _locals(spot: Spot, said: Said, own: PeriodSpot) -> Iterator[tuple[int, acb]
 def steady_period(spot: Spot, said: Said) -> Iterator[Finding]:
     """A row in a part of the period that is left as it was found."""
     own = _own(spot, said)
-    row = row_of(spot, said.statement.sides[0], index="rep")
+    row = row_of(spot, said.statement.sides[0], *_indices(spot, said), "steady")
     if row is None:
         yield Fault("steady period", "it is of no state and no output of the model")
         return
@@ -170,7 +181,7 @@ def steady_period(spot: Spot, said: Said) -> Iterator[Finding]:
 def after(spot: Spot, said: Said) -> Iterator[Finding]:
     """A row once all periods are over."""
     own = _own(spot, said)
-    row = row_of(spot, said.statement.sides[0], index="rep")
+    row = row_of(spot, said.statement.sides[0], *_indices(spot, said))
     count = own.repeat.count
     if row is None or count is None:
         yield Fault("after the periods", "there is no such row, or no end")
@@ -180,6 +191,47 @@ def after(spot: Spot, said: Said) -> Iterator[Finding]:
         names = {**spot.names, spot.model.time: t}
         value = ball_at(formula_of(said.statement.sides[1]), names)
         yield equal("after the periods", value, own.rows_at(t)[row])
+
+
+def whole(spot: Spot, said: Said) -> Iterator[Finding]:
+    """The solution is the sum of its parts: nothing but this is said."""
+    expected = whole_statement(Writing(spot.model), spot.solution)
+    yield from whether(said.statement == expected, "whole", "it is another sum")
+
+
+def period_term(spot: Spot, said: Said) -> Iterator[Finding]:
+    """A term of an equation along the motion in the n-th period."""
+    left, formula = map(formula_of, said.statement.sides)
+    for names in _along(spot, said):
+        yield equal("term of an equation", ball_at(formula, names), ball_at(left, names))
+
+
+def period_balance(spot: Spot, said: Said) -> Iterator[Finding]:
+    """The terms in print add up to the input within a period: the residual is zero."""
+    terms = [s for s in said.step.statements if s.says == "period term"]
+    for names in _along(spot, said):
+        total = sum((ball_at(formula_of(s.sides[1]), names) for s in terms), acb(0))
+        for side in said.statement.sides:
+            yield equal("equation", total, ball_at(formula_of(side), names))
+
+
+def _along(spot: Spot, said: Said) -> Iterator[dict[str, Any]]:
+    """The names of a model along what one way to repeat adds, at times within periods."""
+    own, indices = _own(spot, said), _indices(spot, said)
+    when: Any = said.step.facts["when"]
+    low, high = (ball_at(formula_of(part), spot.names) for part in when.parts)
+    first, n_states = own.single.instants[0], spot.a.nrows()
+    for n in _periods(own):
+        for share in (3, 5):
+            local = low + (high - low) * share / 8
+            place = min(own.single.place_at(first + local), own.stretches[-1])
+            rows = own.in_period(own.before(n), place, local)
+            state = acb_mat([[row] for row in rows[:n_states]])
+            inputs = own.single.inputs_at(place, first + local)
+            names = named_at(own.single, first + local, state, inputs)
+            names |= {indexed(name, indices): value for name, value in names.items()}
+            names |= {_letter(said): acb(n), _local_name(said): local}
+            yield names
 
 
 def divisor(spot: Spot, said: Said) -> Iterator[Finding]:

@@ -134,8 +134,12 @@ PROVERS: dict[str, Prover] = {
     "steady period": periods.steady_period,
     "after the periods": periods.after,
     "divisor": periods.divisor,
+    "whole": periods.whole,
+    "period term": periods.period_term,
+    "period balance": periods.period_balance,
     "given value": within,
     "in numbers": within,
+    "period in numbers": within,
 }
 """What proves each statement, by what it says."""
 
@@ -145,10 +149,11 @@ TABLES: dict[str, Callable[[Spot, Step], Iterator[Finding]]] = {
 }
 """What proves the tables and verdicts of a step, by its kind."""
 
-_COMPARING = frozenset({"case condition", "sign", "in numbers"})
+_COMPARING = frozenset({"case condition", "sign", "in numbers", "period in numbers"})
 """What asks for the relation of a statement; the others prove that sides are equal."""
 
 _OF_THE_MODEL = frozenset({"driven_model", "state_form", "input_system", "substitution"})
+_OF_THE_MODEL |= {"period_substitution"}
 """Steps in which the names of the model's functions stand for themselves."""
 
 
@@ -259,14 +264,16 @@ def _undefined(model: DrivenModel, spot: Spot, said: Said) -> Iterator[Fault]:
     known = {model.time, *spot.names}
     if said.step.kind == "stability":
         known.add(Writing(model).root.text)
-    if said.step.kind == "periodic":
+    if said.step.kind in ("periodic", "period_substitution"):
         number, local = said.step.facts["number"], said.step.facts["local"]
         known |= {name for item in (number, local) for name in _own_names(item)}
-    own = {*model.rows, *model.unknowns, *(i.name for i in model.inputs)}
+    parts: Any = said.step.facts.get("own", ())
+    own = {*model.rows, *model.unknowns, *(i.name for i in model.inputs), *parts}
     for side in said.statement.sides:
         for formula in expressions_in(side):
             for name in sorted(names_in(formula)):
-                of_model = jet_of(name)[0] in own or _is_label(model, name)
+                stem = jet_of(name)[0]
+                of_model = stem in own or _is_label(model, name)
                 if name not in known and not (said.step.kind in _OF_THE_MODEL and of_model):
                     yield Fault(said.statement.says, f"{name} is used and not defined")
 

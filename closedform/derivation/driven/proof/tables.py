@@ -8,7 +8,9 @@ from typing import Any
 from flint import acb, arb
 
 from closedform.algebra.enclosure import ball_of
-from closedform.derivation.driven.proof.period_spot import total_at
+from closedform.derivation.driven.indices import base_indices, repeated_indices
+from closedform.derivation.driven.proof.motion import row_of
+from closedform.derivation.driven.proof.period_spot import periods_of, total_at
 from closedform.derivation.driven.proof.spot import Spot
 from closedform.derivation.driven.proof.stated import condition
 from closedform.derivation.driven.proof.values import NoPieceError, side_at
@@ -74,7 +76,44 @@ def number_set(spot: Spot, step: Step, held: Mapping[str, Any]) -> Iterator[Find
         for line in row["lines"]:
             place = line["place"]
             yield from _formula(spot, line["statement"], digits, range(place, place + 1))
+    for row in held["periods"]:
+        for part in row["parts"]:
+            for statement in part["statements"]:
+                yield from _in_period(spot, row, part["when"], statement, digits)
     yield from _table(spot, step, held)
+
+
+def _in_period(
+    spot: Spot, held: Mapping[str, Any], when: Symbol, statement: Any, digits: int
+) -> Iterator[Finding]:
+    """A formula with numbers agrees with the motion in some periods."""
+    symbol, side = statement.sides
+    place, own = held["place"], periods_of(spot)[held["place"]]
+    row = row_of(spot, symbol, *repeated_indices(spot.solution, place))
+    if row is None or not isinstance(when.argument, Name):
+        yield Fault("period in numbers", "it is of no state and no output of the model")
+        return
+    kept = {when.argument.text, held["number"].text}
+    texts = {text for f in (side, *when.parts) for text in names_in(formula_of(f)) - kept}
+    decimals = {text: acb(number_in(text)) for text in texts}
+    low, high = (ball_at(formula_of(part), decimals) for part in when.parts)
+    first = own.single.instants[0]
+    for n in (1, 2, 5):
+        if own.repeat.count is not None and n > own.repeat.count:
+            continue
+        for share in (3, 5):
+            local = low + (high - low) * share / 8
+            part = min(own.single.place_at(first + local), own.stretches[-1])
+            expected = own.in_period(own.before(n), part, local)[row]
+            names = {**decimals, when.argument.text: local, held["number"].text: acb(n)}
+            value = acb(ball_at(side, names))
+            size = 1 + sum(
+                (abs(e).upper() for e in own.in_period(own.before(n), part, local)), arb(0)
+            )
+            margin = size * arb(10) ** (1 - digits) if statement.relation != "=" else None
+            yield Comparison(
+                f"{symbol.letter} in numbers", value - expected, acb(0), margin=margin, scale=size
+            )
 
 
 def _number(formula: Any) -> acb:
@@ -89,6 +128,8 @@ def _formula(spot: Spot, statement: Any, digits: int, places: range) -> Iterator
         yield Fault("in numbers", "it is of no state and no output of the model")
         return
     row = model.rows.index(symbol.letter)
+    if symbol.indices != base_indices(spot.solution):
+        yield Fault("in numbers", "it is of another part of the solution")
     decimals = {
         text: acb(number_in(text))
         for formula in expressions_in(side)
