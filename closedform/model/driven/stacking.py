@@ -40,15 +40,15 @@ def state_names(
 def generator_names(orders: Sequence[int], inputs: Sequence[str], names: Names) -> tuple[str, ...]:
     """Return a name for each row of the generator: an input's, then its derivatives'.
 
-    `inputs` are the names of the inputs, empty for one that has none or whose name is taken
-    by another form of it.  No two names of the model are printed alike.
+    `inputs` are the names of the inputs, empty for one that has none; where several have one
+    name, the first has it.  No two names of the model are printed alike.
     """
     taken = {printed_key(name) for name in (names.time, *names.taken)}
     found: list[str] = []
     number = 0
     for order, name in zip(orders, inputs, strict=True):
-        block = [dotted(name, k) for k in range(order)] if name else []
-        if not name or not _free(block[1:], taken):
+        block = [dotted(name, k) for k in range(order)] if name and name not in found else []
+        if not _free(block[1:], taken):
             block = []
         while order and not block:
             number += 1
