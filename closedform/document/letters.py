@@ -5,9 +5,19 @@ from __future__ import annotations
 from collections.abc import Callable
 
 from closedform.derivation.step import Symbol
-from closedform.notation.expression import Expression, Name, Negation, Number, Quotient, Sum
+from closedform.notation.expression import (
+    ONE,
+    ZERO,
+    Expression,
+    Name,
+    Negation,
+    Number,
+    Product,
+    Quotient,
+    Sum,
+)
 from closedform.notation.latex.box import BINARY, Box, Style, bracketed, joined, plain
-from closedform.notation.latex.formula import formula
+from closedform.notation.latex.formula import formula, signed
 from closedform.notation.latex.names import derivative_box, letter_box, name_box, subscripted
 
 __all__ = [
@@ -22,8 +32,10 @@ __all__ = [
     "lettered",
     "one_sided",
     "raised",
+    "residue_sum",
     "resolvent",
     "scalar",
+    "shifted",
     "step",
     "time_derivative",
     "turn",
@@ -161,3 +173,40 @@ def time_derivative(symbol: Symbol) -> Box:
     """Return d/dt."""
     t = formula(symbol.argument or Name("t"))
     return Box(rf"\frac{{\mathrm{{d}}}}{{\mathrm{{d}}{t.latex}}}", t.width + 0.8, 2)
+
+
+def residue_sum(symbol: Symbol) -> Box:
+    """Return the sum of N(lambda) e^(lambda t)/p'(lambda) over the zeros of p."""
+    variable = symbol.parts[0] if symbol.parts else Name("lambda")
+    if not isinstance(variable, Name):
+        raise TypeError(f"{variable} is no variable")
+    root = formula(variable)
+    exponent = formula(Product((variable, symbol.argument or Name("t"))), Style.SCRIPT)
+    value = bracketed(root)
+    above = joined(bold(symbol, "N"), value)
+    latex = (
+        rf"\sum_{{p{value.latex} = 0}} \frac{{{above.latex}}}{{p'{value.latex}}}\,"
+        rf"\mathrm{{e}}^{{{exponent.latex}}}"
+    )
+    return Box(latex, 3.0 + above.width + 0.7 + exponent.width, 3)
+
+
+def shifted(symbol: Symbol) -> Box:
+    """Return A less a multiple of I, or a power of that."""
+    box = bold(symbol, "A")
+    if symbol.argument is None:
+        raise ValueError("a shifted matrix needs the eigenvalue as its argument")
+    if symbol.argument != ZERO:
+        negative, size = signed(symbol.argument)
+        amount = formula(size)
+        if isinstance(size, Sum):
+            amount = bracketed(amount)
+        if size == ONE:
+            amount = Box("", 0.0)
+        gap = Box("" if isinstance(size, Name | Number) and not amount.height else r"\,", 0.2)
+        sign = Box(" + " if negative else " - ", BINARY)
+        box = joined(box, sign, amount, gap, Box(r"\boldsymbol{I}", 0.6))
+    if symbol.order > 1:
+        box = box if symbol.argument == ZERO else bracketed(box)
+        box = raised(box, str(symbol.order), 0.5)
+    return box

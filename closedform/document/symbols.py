@@ -56,7 +56,6 @@ from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
 from closedform.document.letters import (
     adjugate,
     applied,
-    bold,
     derivative,
     determinant,
     dotted,
@@ -64,9 +63,10 @@ from closedform.document.letters import (
     inverse,
     lettered,
     one_sided,
-    raised,
+    residue_sum,
     resolvent,
     scalar,
+    shifted,
     step,
     time_derivative,
     turn,
@@ -84,12 +84,11 @@ from closedform.notation.latex.box import (
     BINARY,
     RELATION,
     Box,
-    Style,
     bracketed,
     joined,
     plain,
 )
-from closedform.notation.latex.formula import formula, signed
+from closedform.notation.latex.formula import formula
 from closedform.notation.latex.names import name_box
 
 __all__ = ["ANY_ROW", "KINDS", "side_box", "symbol_box"]
@@ -150,41 +149,6 @@ def _polynomial(symbol: Symbol) -> Box:
     if symbol.parts:
         return joined(box, bracketed(side_box(symbol.parts[0])))
     return applied(box, symbol.argument or Name("lambda"))
-
-
-def _residue_sum(symbol: Symbol) -> Box:
-    variable = symbol.parts[0] if symbol.parts else Name("lambda")
-    if not isinstance(variable, Name):
-        raise TypeError(f"{variable} is no variable")
-    root = formula(variable)
-    exponent = formula(Product((variable, symbol.argument or Name("t"))), Style.SCRIPT)
-    value = bracketed(root)
-    above = joined(bold(symbol, "N"), value)
-    latex = (
-        rf"\sum_{{p{value.latex} = 0}} \frac{{{above.latex}}}{{p'{value.latex}}}\,"
-        rf"\mathrm{{e}}^{{{exponent.latex}}}"
-    )
-    return Box(latex, 3.0 + above.width + 0.7 + exponent.width, 3)
-
-
-def _shifted(symbol: Symbol) -> Box:
-    box = bold(symbol, "A")
-    if symbol.argument is None:
-        raise ValueError("a shifted matrix needs the eigenvalue as its argument")
-    if symbol.argument != ZERO:
-        negative, size = signed(symbol.argument)
-        amount = formula(size)
-        if isinstance(size, Sum):
-            amount = bracketed(amount)
-        if size == Number(ZERO.value + 1):
-            amount = Box("", 0.0)
-        gap = Box("" if isinstance(size, Name | Number) and not amount.height else r"\,", 0.2)
-        sign = Box(" + " if negative else " - ", BINARY)
-        box = joined(box, sign, amount, gap, Box(r"\boldsymbol{I}", 0.6))
-    if symbol.order > 1:
-        box = box if symbol.argument == ZERO else bracketed(box)
-        box = raised(box, str(symbol.order), 0.5)
-    return box
 
 
 def _entry(symbol: Symbol) -> Box:
@@ -320,8 +284,8 @@ KINDS: dict[str, Callable[[Symbol], Box]] = {
     "determinant": determinant,
     "resolvent": resolvent,
     "adjugate": adjugate,
-    "residue sum": _residue_sum,
-    "shifted": _shifted,
+    "residue sum": residue_sum,
+    "shifted": shifted,
     "entry": _entry,
     "pair": _pair,
     "real pair": _real_pair,

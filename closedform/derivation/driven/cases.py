@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Mapping, Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import replace
 from typing import Any
 
 from flint import acb, ctx
 
+from closedform.derivation.driven.alike import alike, printed, some
 from closedform.derivation.driven.closing_steps import resonance_step
 from closedform.derivation.driven.generator_steps import generator_step
 from closedform.derivation.driven.model_steps import driven_model_step
@@ -174,14 +175,11 @@ def _results(
     ]
     found = [driven_steps(response, *pair) for pair in told]
     kinds = list(dict.fromkeys(step.kind for steps in found for step in steps))
-    made += [_printed([s for steps in found for s in steps if s.kind == kind]) for kind in kinds]
+    made += [printed([s for steps in found for s in steps if s.kind == kind]) for kind in kinds]
     if solutions[0].resonances and solutions[0].case is not None:
-        yield from _alike(_some(resonance_step(writing, *pair) for pair in told), len(solutions))
+        yield from alike(some(resonance_step(writing, *pair) for pair in told), len(solutions))
     for steps in made:
-        yield from _alike(steps, len(solutions))
-
-
-_OF_ONE_CASE = ("cases", "number", "numbers", "conditions")
+        yield from alike(steps, len(solutions))
 
 
 def _kernels_once(step: Step) -> Step:
@@ -206,60 +204,6 @@ def _size(step: Step) -> int:
     """The operations in the matrices of a step."""
     matrices = [side for s in step.statements for side in s.sides if isinstance(side, Matrix)]
     return sum(operations(entry) for m in matrices for row in m.rows for entry in row)
-
-
-def _printed(steps: Sequence[Step]) -> list[Step]:
-    """The steps of one kind, with those in full documents only that tell little more.
-
-    That is stability where parameters are tied, and substitution but in the first case.
-    """
-
-    def shown(step: Step) -> bool:
-        if step.kind == "stability":
-            return bool(step.facts["generic"])
-        return step.kind not in ("substitution", "period_substitution") or 0 in _tuple(
-            step.facts["cases"]
-        )
-
-    return [step if shown(step) else replace(step, depth="full") for step in steps]
-
-
-def _some(steps: Iterable[Step | None]) -> list[Step]:
-    return [step for step in steps if step is not None]
-
-
-def _alike(steps: Sequence[Step], count: int) -> list[Step]:
-    """The steps, those put into one that say the same of several cases, of `count` in all."""
-    found: list[Step] = []
-    for step in steps:
-        place = next((k for k, other in enumerate(found) if _same(step, other)), None)
-        if place is None:
-            found.append(step)
-        else:
-            found[place] = _joined(found[place], step)
-    return [
-        replace(s, facts={**s.facts, "whole": len(_tuple(s.facts["cases"])) == count})
-        for s in found
-    ]
-
-
-def _same(step: Step, other: Step) -> bool:
-    def rest(facts: Mapping[str, object]) -> dict[str, object]:
-        return {key: value for key, value in facts.items() if key not in _OF_ONE_CASE}
-
-    return step.statements == other.statements and rest(step.facts) == rest(other.facts)
-
-
-def _joined(step: Step, other: Step) -> Step:
-    facts = dict(step.facts)
-    for key in ("cases", "numbers"):
-        facts[key] = (*_tuple(step.facts[key]), *_tuple(other.facts[key]))
-    facts["conditions"] = ()
-    return replace(step, facts=facts)
-
-
-def _tuple(item: object) -> tuple[object, ...]:
-    return item if isinstance(item, tuple) else (item,)
 
 
 def _spots(
