@@ -10,7 +10,7 @@ from __future__ import annotations
 from fractions import Fraction
 
 from closedform.derivation.step import Matrix, Side, Symbol
-from closedform.document.symbols import side_box
+from closedform.document.symbols import added, side_box
 from closedform.notation.expression import (
     Call,
     Expression,
@@ -36,7 +36,7 @@ def pieces(side: Side, room: float) -> list[Box]:
         if side.kind != "sum":
             return [whole]
         boxes = [side_box(part) for part in side.parts]
-        return [boxes[0], *(_after_sign(box, "+") for box in boxes[1:])]
+        return [boxes[0], *map(added, boxes[1:])]
     if isinstance(side, tuple):
         boxes = [side_box(member) for member in side]
         return [boxes[0], *(_after_dot(box) for box in boxes[1:])]

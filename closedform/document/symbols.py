@@ -91,7 +91,7 @@ from closedform.notation.latex.box import (
 from closedform.notation.latex.formula import formula
 from closedform.notation.latex.names import name_box
 
-__all__ = ["ANY_ROW", "KINDS", "side_box", "symbol_box"]
+__all__ = ["ANY_ROW", "KINDS", "added", "side_box", "symbol_box"]
 
 ANY_ROW = r"\cdot"
 """The first index of an entry that stands for a whole column."""
@@ -187,12 +187,14 @@ def _plus_minus(middle: Side, distance: Side) -> Box:
 
 
 def _sum(symbol: Symbol) -> Box:
-    boxes: list[Box] = []
-    for i, part in enumerate(symbol.parts):
-        if i:
-            boxes.append(plain(" + ", BINARY))
-        boxes.append(side_box(part))
-    return joined(*boxes)
+    first, *others = map(side_box, symbol.parts)
+    return joined(first, *map(added, others))
+
+
+def added(box: Box) -> Box:
+    """Return a term with the sign before it that adds it: that of its own, if it has one."""
+    sign, latex = ("-", box.latex[1:].lstrip()) if box.latex.startswith("-") else ("+", box.latex)
+    return Box(f" {sign} {latex}", box.width + BINARY, box.height, start="{}")
 
 
 def _quotient(symbol: Symbol) -> Box:
