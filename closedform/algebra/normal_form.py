@@ -9,14 +9,14 @@ a denominator is inverted by Euclid's algorithm.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property, lru_cache
 
 from closedform.algebra.domain import ParameterDomain
 from closedform.algebra.exponential import ExponentialMatrix
 from closedform.algebra.field import FieldMatrix, Polynomial, Scalar
-from closedform.algebra.lowest_terms import sum_at
+from closedform.algebra.lowest_terms import put_in, sum_at
 from closedform.algebra.parameter_field import PI, ParameterField, ParameterPolynomial
 
 __all__ = ["NormalForm", "UnderRelation", "under_relation"]
@@ -46,6 +46,17 @@ class NormalForm:
             parameters=tuple(name for name in self.field.parameters if name != self.main)
         )
 
+    @property
+    def degree(self) -> int:
+        """The degree of the relation in `main`."""
+        return int(self.relation.numer.degree(self._place))
+
+    @cached_property
+    def _value(self) -> Scalar:
+        """What a linear relation puts in the place of `main`."""
+        lead, rest = self._modulus.to_list()
+        return self._others.into(self.field, -rest / lead)
+
     @cached_property
     def _modulus(self) -> Polynomial:
         return self._polynomial(self.relation.numer).monic()
@@ -63,6 +74,8 @@ class NormalForm:
 
     def worked_out(self, element: Scalar) -> Scalar:
         """Return the same as `reduced`, worked out anew."""
+        if self.degree == 1:
+            return put_in(self.field, element, self.main, self._value)
         above = self._polynomial(element.numer).rem(self._modulus)
         if above.is_zero:
             return self.field.domain.zero
@@ -110,20 +123,27 @@ class UnderRelation:
     def shortest(self, element: Scalar) -> Scalar:
         """Return the shortest of an element and its forms, with a power of `main` in front or not.
 
-        Those count that divide by nothing that may vanish, if there is one; of equals the first.
+        Those count that divide by nothing that may vanish, or else the element as it is; of
+        equals the first.
         """
         return _shortest(self, element)
 
-    def polynomial(self, p: Polynomial) -> Polynomial:
+    def polynomial(self, p: Polynomial, *last: Scalar) -> Polynomial:
         """Return a polynomial over the field with coefficients in their shortest form.
 
-        Forms of which a sign is known come first: where the roots lie is asked of them.
+        Forms of which a sign is known come first: where the roots lie is asked of them.  Others
+        that are known of the last coefficient may be given.
         """
-        return self.domain.field.polynomial([self._signed(c) for c in p.to_list()])
+        *others, own = p.to_list()
+        return self.domain.field.polynomial(
+            [*(self._signed([c]) for c in others), self._signed([own, *last])]
+        )
 
-    def _signed(self, element: Scalar) -> Scalar:
-        known = (f for f in _forms(self, element) if self.domain.sign_of(f).never_zero)
-        return next(known, self.shortest(element))
+    def _signed(self, equal: Sequence[Scalar]) -> Scalar:
+        """The shortest form of which a sign is known, of elements that are equal."""
+        forms = (f for element in equal for f in _forms(self, element))
+        signed = (f for f in forms if self.domain.sign_of(f).never_zero)
+        return next(signed, self.shortest(equal[0]))
 
     def matrix(self, matrix: FieldMatrix) -> FieldMatrix:
         """Return a matrix with entries in their shortest form."""
@@ -147,7 +167,7 @@ class UnderRelation:
         for form in self.forms:
             yield form.reduced(element)
             v = form.field.symbol(form.main)
-            for power in SHIFTS:
+            for power in SHIFTS if form.degree > 1 else ():
                 yield form.reduced(element * v**power) / v**power
 
     def is_defined(self, element: Scalar) -> bool:
@@ -163,19 +183,35 @@ def under_relation(domain: ParameterDomain, relation: Scalar) -> UnderRelation:
     """Return the forms of elements on a domain on which an irreducible polynomial vanishes.
 
     They are made in each parameter in which it has the lowest degree, where elements have the
-    fewest terms; in those alone whose highest power has a number before it, if there are any:
-    nothing else comes into denominators then.  The last parameter is the first of them.
+    fewest terms; in those alone whose highest power has a number before it, if there are any,
+    or else what is known not to vanish: this comes into denominators.  Without any of these one
+    form is made, by which zero is told.  The last parameter is the first of them.
     """
     field, polynomial = domain.field, relation.numer
     found = []
     for place, name in enumerate(field.parameters):
         degree = polynomial.degree(place)
         if degree > 0 and name != PI:
-            lead = _coefficients_in(polynomial, place)[degree]
-            found.append((degree, any(map(any, lead)), name))
+            found.append((degree, _doubt(domain, polynomial, place), name))
     least = min(key[:2] for key in found)
     names = [name for *key, name in reversed(found) if tuple(key) == least]
+    if least[1] == DOUBTFUL:
+        names = names[:1]
     return UnderRelation(domain, tuple(NormalForm(field, relation, name) for name in names))
+
+
+DOUBTFUL = 2
+
+
+def _doubt(domain: ParameterDomain, polynomial: ParameterPolynomial, place: int) -> int:
+    """Whether the highest power of a parameter has a number before it (0), or what may vanish."""
+    field = domain.field
+    terms = _coefficients_in(polynomial, place)[polynomial.degree(place)]
+    if not any(map(any, terms)):
+        return 0
+    whole = {(*m[:place], 0, *m[place:]): c for m, c in terms.items()}
+    lead = field.of_polynomial(polynomial.ring.from_dict(whole))
+    return 1 if domain.sign_of(lead).never_zero else DOUBTFUL
 
 
 def _coefficients_in(
@@ -201,12 +237,13 @@ def _shortest(under: UnderRelation, element: Scalar) -> Scalar:
 
 @lru_cache(maxsize=16384)
 def _forms(under: UnderRelation, element: Scalar) -> tuple[Scalar, ...]:
-    """The forms of an element, short ones first; none of zero."""
+    """The sound forms of an element, short ones first; none of zero."""
     if not under.reduced(element):
         return ()
     field = under.domain.field
     forms = sorted(dict.fromkeys(under.candidates(element)), key=lambda e: _length(field, e))
-    return tuple(filter(under.is_defined, forms)) or tuple(forms)
+    # what the element itself divides by is known to who made it, and nothing else is
+    return tuple(filter(under.is_defined, forms)) or (element,)
 
 
 def _length(field: ParameterField, element: Scalar) -> tuple[int, int]:

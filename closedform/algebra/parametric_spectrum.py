@@ -49,13 +49,21 @@ def spectrum_under_relation(
     """
     normal = relation.forms[0].of_polynomial
     elsewhere = [normal(f.p) for f in spectrum.factors]
+    known = {q: relation.polynomial(f.p) for f, q in zip(spectrum.factors, elsewhere, strict=True)}
+    found = [
+        (part, multiplicity)
+        for p, multiplicity in _squarefree_parts(spectrum.characteristic_polynomial, normal)
+        for part in ([p] if p in known else _rational_parts(p, elsewhere, normal))
+    ]
+    product = reduce(mul, (known[p].nth(0) ** m for p, m in found if p in known), field.domain.one)
+    last = spectrum.characteristic_polynomial.nth(0) / product if product else product
+    new = [(p, m) for p, m in found if p not in known]
     factors = []
-    for p, multiplicity in _squarefree_parts(spectrum.characteristic_polynomial, normal):
-        parts = [p] if p in elsewhere else _rational_parts(p, elsewhere, normal)
-        for part in parts:
-            known = (f.p for f, q in zip(spectrum.factors, elsewhere, strict=True) if q == part)
-            short = relation.polynomial(next(known, part))
-            factors.append(Factor(short, (multiplicity,), _root_set(field, short)))
+    for p, multiplicity in found:
+        # a single factor that is new has the rest of the product of all roots
+        rest = (last,) if last and new == [(p, 1)] else ()
+        short = known.get(p) or relation.polynomial(p, *rest)
+        factors.append(Factor(short, (multiplicity,), _root_set(field, short)))
     return _spectrum(field, sorted(factors, key=lambda f: (f.degree, str(f.p))))
 
 
