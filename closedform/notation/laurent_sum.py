@@ -27,7 +27,7 @@ from closedform.notation.weight import (
     sum_of_weights,
 )
 
-__all__ = ["Laurent", "laurent_of", "ordered", "shortest_sum"]
+__all__ = ["Laurent", "flat_size", "laurent_of", "ordered", "shortest_sum"]
 
 Laurent = tuple[tuple[tuple[int, ...], Fraction], ...]
 """(exponents, coefficient) of every term, coefficients not 0, in the order of printing."""
@@ -70,7 +70,7 @@ def shortest_sum(field: ParameterField, terms: Laurent) -> Weight:
             [shortest_sum(field, group) for group in groups] for groups in _groupings(terms)
         ]
     sizes = [sum(weight.size for weight in weights) + len(weights) - 1 for weights in groupings]
-    size = _flat_size(terms)
+    size = flat_size(terms)
     # a sign is one operation more: what is longer by two is not written
     most = min([size, *sizes, *(form.length for form in forms)]) + 1
     forms += [sum_of_weights(w) for w, n in zip(groupings, sizes, strict=True) if n <= most]
@@ -80,8 +80,8 @@ def shortest_sum(field: ParameterField, terms: Laurent) -> Weight:
     return shortest(field, forms)
 
 
-def _flat_size(terms: Laurent) -> int:
-    """The operations of a sum written term by term, without a sign of all of it."""
+def flat_size(terms: Laurent) -> int:
+    """Return the operations of a sum written term by term, without a sign of all of it."""
     size = len(terms) - 1
     for exponents, number in terms:
         above = int(abs(number.numerator) != 1)

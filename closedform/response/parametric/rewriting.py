@@ -20,6 +20,7 @@ from closedform.algebra.lowest_terms import equal_under, put_in
 from closedform.algebra.parameter_field import ParameterField, ParameterPolynomial
 from closedform.notation.expression import Expression, operations
 from closedform.response.parametric.closed_form import Term, closed_form
+from closedform.response.parametric.extent import are_long, estimate
 
 __all__ = ["Extent", "Rewriting", "Shortest", "rewriting_for", "rewritten", "shortest"]
 
@@ -142,6 +143,7 @@ def shortest(
 
     The whole is the operations of all formulas and, from `definitions_cost`, those of the
     definitions of the abbreviations in them.  Rewritings of one name exclude each other.
+    Long functions are compared by an estimate, and written once.
     """
     names = tuple(dict.fromkeys(r.name for r in rewritings))
     options: list[list[Choice]] = [[None] for _ in names]
@@ -150,12 +152,13 @@ def shortest(
             if rewriting.name == name:
                 choices += [(rewriting, "everywhere"), (rewriting, "rates")]
     values = {r.name: r.value for r in rewritings}
-    search = _Search(field, functions, names, values, definitions_cost, time)
+    estimated = are_long(functions)
+    search = _Search(field, functions, names, values, definitions_cost, time, estimated)
     if prod(map(len, options)) <= TRIED:
         best = min(product(*options), key=search.cost)
     else:
         best = _improved(options, search)
-    return search.results[best]
+    return search.result(best)
 
 
 def _improved(options: Sequence[Sequence[Choice]], search: _Search) -> tuple[Choice, ...]:
@@ -176,7 +179,10 @@ def _improved(options: Sequence[Sequence[Choice]], search: _Search) -> tuple[Cho
 
 @dataclass
 class _Search:
-    """What the choices are tried on; `results` keeps what was written, `least` its cost."""
+    """What the choices are tried on; `results` keeps what was written, `least` its cost.
+
+    Where costs are `estimated`, nothing is written before the choice is made.
+    """
 
     field: ParameterField
     functions: Sequence[Sequence[Term]]
@@ -184,6 +190,7 @@ class _Search:
     values: Mapping[str, Scalar]
     definitions_cost: Mapping[str, int]
     time: str
+    estimated: bool = False
     costs: dict[tuple[Choice, ...], int] = dataclass_field(default_factory=dict)
     results: dict[tuple[Choice, ...], Shortest] = dataclass_field(default_factory=dict)
     least: int | None = None
@@ -197,26 +204,46 @@ class _Search:
             self.costs[choices] = self._tried(choices)
         return self.costs[choices]
 
+    def result(self, choices: tuple[Choice, ...]) -> Shortest:
+        """Return what was written for choices."""
+        if choices not in self.results:
+            functions = self._rewritten(choices)
+            formulas = tuple(closed_form(self.field, terms, self.time) for terms in functions)
+            self._keep(choices, functions, formulas)
+        return self.results[choices]
+
     def _tried(self, choices: tuple[Choice, ...]) -> int:
-        used = [choice for choice in choices if choice is not None]
-        functions = rewritten(self.field, self.functions, used)
-        names = self._names_in(functions)
-        cost = sum(self.definitions_cost[name] for name in names)
+        functions = self._rewritten(choices)
+        cost = sum(self.definitions_cost[name] for name in self._names_in(functions))
+        if self.estimated:
+            return cost + estimate(functions)
         formulas: list[Expression] = []
         for terms in functions:
             formulas.append(closed_form(self.field, terms, self.time))
             cost += operations(formulas[-1])
             if self.least is not None and cost > self.least:
                 return cost
+        self._keep(choices, functions, formulas)
+        self.least = cost
+        return cost
+
+    def _rewritten(self, choices: tuple[Choice, ...]) -> tuple[tuple[Term, ...], ...]:
+        return rewritten(self.field, self.functions, [c for c in choices if c is not None])
+
+    def _keep(
+        self,
+        choices: tuple[Choice, ...],
+        functions: tuple[tuple[Term, ...], ...],
+        formulas: Sequence[Expression],
+    ) -> None:
+        used = [choice for choice in choices if choice is not None]
         self.results[choices] = Shortest(
             functions,
             tuple(formulas),
-            names,
+            self._names_in(functions),
             tuple(rewriting for rewriting, _ in used),
             tuple(extent for _, extent in used),
         )
-        self.least = cost
-        return cost
 
     def _names_in(self, functions: Sequence[Sequence[Term]]) -> tuple[str, ...]:
         """Return the abbreviations in the functions, and those in their definitions."""

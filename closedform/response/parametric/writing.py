@@ -17,6 +17,7 @@ from closedform.notation.expression import Expression, names_in, operations
 from closedform.notation.shown import FormulaColumn, FormulaMatrix
 from closedform.response.parametric.case import Case, Sought
 from closedform.response.parametric.closed_form import closed_form, fronted_matrix
+from closedform.response.parametric.extent import are_long, estimate
 from closedform.response.parametric.lettering import Lettering, lettering
 from closedform.response.parametric.mode_parts import by_mode
 from closedform.response.parametric.mode_terms import terms_of
@@ -218,7 +219,12 @@ def _shortest_under_equations(
     forms = [rewritten(writing, _put_in(writing, functions, put), used) for put in puts]
     if len(forms) == 1:
         return nothing, forms[0]
-    lengths = [sum(operations(closed_form(writing, f, time)) for f in form) for form in forms]
+    lengths = [
+        estimate(form)
+        if are_long(functions)
+        else sum(operations(closed_form(writing, f, time)) for f in form)
+        for form in forms
+    ]
     best = lengths.index(min(lengths))
     return puts[best], forms[best]
 

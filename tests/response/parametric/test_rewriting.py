@@ -14,7 +14,13 @@ from closedform.notation.evaluation import enclose
 from closedform.notation.expression import operations
 from closedform.notation.plain import plain
 from closedform.response.parametric.closed_form import Term, closed_form
-from closedform.response.parametric.rewriting import Rewriting, rewriting_for, shortest
+from closedform.response.parametric.extent import are_long, estimate
+from closedform.response.parametric.rewriting import (
+    Rewriting,
+    rewriting_for,
+    rewritten,
+    shortest,
+)
 from tests.rational_elements import element, field_of, points
 from tests.response.parametric.functions import CIRCULAR, pair, plain_terms, sums, value_at
 
@@ -84,6 +90,22 @@ def test_a_dear_definition_is_not_used() -> None:
     result = shortest(FIELD, oscillator(), [*DELTA, *OMEGA], {"delta": 99, "omega_n": 99}, "t")
     assert result.names == ()
     assert result.formulas == tuple(closed_form(FIELD, terms, "t") for terms in oscillator())
+
+
+def test_long_functions_are_rewritten_and_written_as_short_ones_are() -> None:
+    several = oscillator() * 20
+    assert are_long(several)
+    assert not are_long(oscillator())
+    short = shortest(FIELD, oscillator(), [*DELTA, *OMEGA], {"delta": 2, "omega_n": 2}, "t")
+    long = shortest(FIELD, several, [*DELTA, *OMEGA], {"delta": 2, "omega_n": 2}, "t")
+    assert set(short.names) <= set(long.names)
+    assert long.functions == rewritten(FIELD, several, long.used)
+    assert long.formulas == tuple(closed_form(FIELD, terms, "t") for terms in long.functions)
+
+
+def test_the_estimate_counts_operations_of_factors() -> None:
+    (terms,) = (plain_terms(FIELD, ("(m + c)/k^2", "-m"), ("x0", "0")),)
+    assert estimate([terms]) == 6
 
 
 def test_a_name_may_stand_in_rates_alone() -> None:
