@@ -171,11 +171,23 @@ def _left_to_others(
 
 
 def _excluded(field: ParameterField, branch: Branch, polynomials: tuple[Scalar, ...]) -> bool:
-    """Whether the relation of a branch keeps it away from where the polynomials vanish."""
-    if branch.relation is None:
+    """Whether the relation of a branch keeps it away from where the polynomials vanish.
+
+    It does so if one of them has a form of which no factor vanishes on the branch.
+    """
+    under = branch.under
+    if under is None:
         return False
-    fate = _fate(field, branch, polynomials)
-    return isinstance(fate, Exceptional) and fate.fate == "excluded"
+    forms = (f for p in polynomials for f in (p, under.reduced(p)) if f and under.is_defined(f))
+    return any(
+        all(
+            isinstance(fate := _fate(field, branch, (field.of_polynomial(q),)), Exceptional)
+            and fate.fate == "excluded"
+            for q, exponent in field.factored(form).factors
+            if exponent > 0
+        )
+        for form in forms
+    )
 
 
 def _under_conditions(field: ParameterField, domain: ParameterDomain) -> Start:

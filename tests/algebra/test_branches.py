@@ -5,6 +5,7 @@ from __future__ import annotations
 from fractions import Fraction
 from functools import cache
 
+import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
@@ -157,3 +158,42 @@ def test_points_of_a_depot_belong_to_one_branch_and_its_domain(
 def depot() -> tuple[Branch, ...]:
     rows = [["-ka", "0", "0"], ["ka", "-(k10 + k12)", "k21"], ["0", "k12", "-k21"]]
     return tree(positive("ka k10 k12 k21"), rows)
+
+
+def masses(number: int) -> list[list[str]]:
+    """Equal masses between walls, the first one driven by a wave, as one matrix."""
+    n = number
+    rows = [["0"] * (2 * n + 2) for _ in range(2 * n + 2)]
+    for i in range(n):
+        rows[i][n + i] = "1"
+        for k, entry in ((i - 1, "a"), (i, "-2*a"), (i + 1, "a")):
+            if 0 <= k < n:
+                rows[n + i][k] = entry
+    rows[n][2 * n] = "1"
+    rows[2 * n][2 * n + 1], rows[2 * n + 1][2 * n] = "1", "-w^2"
+    return rows
+
+
+@pytest.mark.parametrize("number", [2, 3, 4])
+def test_resonances_are_short_and_covered_whether_they_are_solved_or_kept(number: int) -> None:
+    branches = tree(positive("a w"), masses(number))
+    assert not list(uncovered(branches))
+    for branch in branches[1:]:
+        assert not [e for e in branch.exceptional if e.fate != "excluded"]
+        assert [f.multiplicity for f in branch.spectrum.factors if f.index > 1] == [2]
+        elements = [
+            element
+            for term in branch.exponential.terms
+            for residue in term.residues
+            for matrix in residue.coefficients
+            for element in matrix.iter_values()
+        ]
+        assert max(len(e.numer) + len(e.denom) for e in elements) <= 4
+
+
+def test_coefficients_under_a_relation_are_zero_or_do_not_vanish() -> None:
+    (kept,) = (b for b in tree(positive("a w"), masses(3)) if b.relation is not None)
+    for term in kept.exponential.terms:
+        for residue in term.residues:
+            for matrix in residue.coefficients:
+                assert not any(vanishes_under(e, kept.relation) for e in matrix.iter_values())
