@@ -45,7 +45,7 @@ DRIVEN = {
     "fin_between_plates": ("equations", 1, ["not stable"]),
     "half_sine_push": ("equations", 1, ["not stable"]),
     "matrices_with_damping": ("second order", 1, ["stable"]),
-    "oral_dose_every_eight_hours": ("equations", 2, ["stable"] * 2),
+    "dose_every_eight_hours": ("equations", 2, ["stable"] * 2),
     "pumped_cascade": ("equations", 1, ["stable"]),
     "sine_at_resonance": ("equations", 2, ["not stable"] * 2),
     "switched_ladder": ("equations", 1, ["stable"]),
