@@ -97,8 +97,11 @@ def _without_powers(field: ParameterField, comparison: Comparison) -> Comparison
 
 
 def follows(field: ParameterField, domain: ParameterDomain, comparison: Comparison) -> bool:
-    """Whether a comparison follows, at once or with an equation of the domain put in."""
-    if domain.implies(comparison) is not None:
+    """Whether a comparison follows, at once or with an equation of the domain put in.
+
+    From conditions that contradict each other everything follows.
+    """
+    if domain.implies(comparison) is not None or domain.contradiction() is not None:
         return True
     return any(
         follows(field, inside, _put(field, comparison, {name: value}))
