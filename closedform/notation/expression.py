@@ -7,7 +7,7 @@ values is decided in ``closedform.algebra``, never here.
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 from fractions import Fraction
 from typing import TypeGuard
@@ -33,6 +33,7 @@ __all__ = [
     "operations",
     "power_of",
     "product",
+    "rebuilt",
 ]
 
 FUNCTIONS = ("exp", "sin", "cos", "sinh", "cosh", "sqrt", "step")
@@ -130,6 +131,37 @@ def names_in(expression: Expression) -> frozenset[str]:
             case Number():
                 pass
     return frozenset(found)
+
+
+def rebuilt(
+    expression: Expression, change: Callable[[Expression], Expression | None]
+) -> Expression:
+    """Return a formula with what `change` gives in the place of nodes, from the outside in.
+
+    A node for which it gives None stays, and its parts are rebuilt; exponents stay as they are.
+    """
+
+    def put(node: Expression) -> Expression:
+        changed = change(node)
+        if changed is not None:
+            return changed
+        match node:
+            case Name() | Number():
+                return node
+            case Negation(inside):
+                return Negation(put(inside))
+            case Sum(terms):
+                return Sum(tuple(map(put, terms)))
+            case Product(factors):
+                return Product(tuple(map(put, factors)))
+            case Quotient(above, below):
+                return Quotient(put(above), put(below))
+            case Power(base, exponent):
+                return Power(put(base), exponent)
+            case Call(function, argument):
+                return Call(function, put(argument))
+
+    return put(expression)
 
 
 def number(value: Fraction | int) -> Expression:

@@ -13,16 +13,20 @@ from hypothesis import strategies as st
 from closedform.notation.expression import (
     ONE,
     ZERO,
+    Call,
     Expression,
     Name,
     Negation,
     Power,
     Product,
     Quotient,
+    Sum,
     factors_of,
     names_in,
+    number,
     power_of,
     product,
+    rebuilt,
 )
 from closedform.notation.plain import plain
 from tests.notation.formulas import NAMES, NUMBERS, formulas, rational_value, whole
@@ -90,3 +94,21 @@ def test_a_power_is_no_power_where_none_is_needed(exponent: int, expected: Expre
 def test_the_names_are_those_of_the_text(expression: Expression) -> None:
     words = set(re.findall("[a-z][a-z0-9_]*", plain(expression)))
     assert names_in(expression) == words & NAMES
+
+
+def test_a_formula_is_rebuilt_from_the_outside_in() -> None:
+    x, y = Name("x"), Name("y")
+    formula = Sum((Call("step", x), Negation(Quotient(Product((x, y)), Power(x, number(2))))))
+
+    def change(node: Expression) -> Expression | None:
+        match node:
+            case Call("step", _):
+                return ZERO
+            case Name("x"):
+                return y
+        return None
+
+    assert rebuilt(formula, change) == Sum(
+        (ZERO, Negation(Quotient(Product((y, y)), Power(y, number(2)))))
+    )
+    assert rebuilt(formula, lambda _: None) == formula

@@ -185,7 +185,8 @@ class Harmonics(Generic[T]):
         value = self.constant(harmonics)
         if value is None or is_zero(value):
             return None
-        return self.of_polynomial(self.number(1) / value)  # type: ignore[operator]
+        one: Scalar = self.number(1)
+        return self.of_polynomial(one / value)
 
     def _waves(self, h: Harmonic) -> list[Wave]:
         """The waves of a harmonic, about the instant at which its exponent or its angle is 0."""
@@ -206,12 +207,9 @@ class Harmonics(Generic[T]):
             turned = self._turned(angle)
             if turned is None:
                 raise NoNumberError(f"{h.kernel}({self.arithmetic.text(angle)})")
-            cos, sin = map(self.number, turned)
-            parts = (
-                [("cos", cos), ("sin", -sin)]  # type: ignore[operator]
-                if h.kernel == "cos"
-                else [("cos", sin), ("sin", cos)]
-            )
+            cos, sin = turned
+            weights = (cos, -sin) if h.kernel == "cos" else (sin, cos)
+            parts = [("cos", self.number(weights[0])), ("sin", self.number(weights[1]))]
         return [
             Wave(c * weight, power, h.rate, kernel, h.frequency, origin)
             for kernel, weight in parts
@@ -255,13 +253,13 @@ class Harmonics(Generic[T]):
             return None
         return COSINES[turns % 2], COSINES[(turns - Fraction(1, 2)) % 2]
 
-    def _half_turns(self, angle: T) -> Fraction | None:
+    def _half_turns(self, angle: Scalar) -> Fraction | None:
         """An angle in multiples of pi, if it is a rational one."""
         if is_zero(angle):
             return Fraction(0)
         if self.pi is None:
             return None
-        return self.arithmetic.fraction(angle / self.pi)  # type: ignore[operator]
+        return self.arithmetic.fraction(angle / self.pi)
 
     def _upright(self, h: Harmonic) -> Harmonic:
         """The same with a frequency, or else a phase, that is written without a minus."""

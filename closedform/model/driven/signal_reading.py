@@ -172,12 +172,13 @@ class _Reading(Generic[T]):
         if line is None or line[0] == number(0):
             raise StepArgumentError(self.place, plain(whole), self.time)
         slope: Scalar = line[0]
+        constant: Scalar = line[1]
         signs = self.switched.order.signs(slope)
         if len(signs) > 1:
             factor = self.arithmetic.text(slope)
             raise UnknownDirectionError(self.place, plain(whole), self.time, factor)
         (sign,) = signs
-        at = -line[1] / slope  # type: ignore[operator]
+        at = -constant / slope
         if name == "delta":
             amount = number(sign) / slope
             return Switched((), (Strike(self.harmonics.of_polynomial(amount), at),))
@@ -188,9 +189,9 @@ class _Reading(Generic[T]):
 def _hyperbolic(sign: int) -> Callable[[Harmonics[T], T, T], tuple[Harmonic, ...]]:
     """(e^(a t + b) + sign e^(-a t - b))/2."""
 
-    def read(harmonics: Harmonics[T], a: T, b: T) -> tuple[Harmonic, ...]:
+    def read(harmonics: Harmonics[T], a: Scalar, b: Scalar) -> tuple[Harmonic, ...]:
         rising = harmonics.exponential(a, b)
-        falling = harmonics.exponential(-a, -b)  # type: ignore[operator]
+        falling = harmonics.exponential(-a, -b)
         half = Fraction(1, 2)
         return harmonics.gathered(
             [

@@ -176,7 +176,7 @@ def _complete_check(setting: Setting) -> Check:
     front: Scalar | None = None
     for point in range(1, count + 1):
         s = setting.field.domain.convert(point)
-        value = characteristic.eval(s)
+        value = characteristic.eval(s)  # a polynomial over the field at one of its elements
         own = _determinant(setting, list(orders), s)
         if front is None and not setting.vanishes(value):
             front = own / value

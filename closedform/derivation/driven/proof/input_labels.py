@@ -13,12 +13,7 @@ from closedform.notation.expression import (
     Call,
     Expression,
     Name,
-    Negation,
-    Number,
-    Power,
-    Product,
-    Quotient,
-    Sum,
+    rebuilt,
 )
 from closedform.notation.jets import jet_of
 
@@ -29,25 +24,10 @@ def with_inputs(spot: Spot, formula: Expression, t: acb) -> Expression:
     """Put the label of an input in the place of what it is written as, at an instant."""
     names = {**spot.names, spot.model.time: t}
 
-    def put(node: Expression) -> Expression:
-        match node:
-            case Name() | Number():
-                return node
-            case Negation(inside):
-                return Negation(put(inside))
-            case Sum(terms):
-                return Sum(tuple(map(put, terms)))
-            case Product(factors):
-                return Product(tuple(map(put, factors)))
-            case Quotient(above, below):
-                return Quotient(put(above), put(below))
-            case Power(base, exponent):
-                return Power(put(base), exponent)
-            case Call(function, argument):
-                label = _label_of(spot, node, names)
-                return Call(function, put(argument)) if label is None else label
+    def label(node: Expression) -> Expression | None:
+        return _label_of(spot, node, names) if isinstance(node, Call) else None
 
-    return put(formula)
+    return rebuilt(formula, label)
 
 
 def _label_of(spot: Spot, node: Call, names: dict[str, Any]) -> Name | None:

@@ -14,15 +14,9 @@ from closedform.notation.expression import (
     ZERO,
     Call,
     Expression,
-    Name,
-    Negation,
-    Number,
-    Power,
-    Product,
-    Quotient,
-    Sum,
     is_expression,
     number,
+    rebuilt,
 )
 
 __all__ = [
@@ -49,28 +43,15 @@ def formula_at(formula: Expression, names: Mapping[str, Any], now: Mapping[str, 
 def with_steps(formula: Expression, now: Mapping[str, Any]) -> Expression:
     """Return a formula with every unit step put in as 0 or 1, and every impulse as 0."""
 
-    def put(node: Expression) -> Expression:
+    def switched(node: Expression) -> Expression | None:
         match node:
-            case Name() | Number():
-                return node
-            case Negation(inside):
-                return Negation(put(inside))
-            case Sum(terms):
-                return Sum(tuple(map(put, terms)))
-            case Product(factors):
-                return Product(tuple(map(put, factors)))
-            case Quotient(above, below):
-                return Quotient(put(above), put(below))
-            case Power(base, exponent):
-                return Power(put(base), exponent)
             case Call("step", argument):
-                return number(int(bool(_value(put(argument), now).real > 0)))
+                return number(int(bool(_value(with_steps(argument, now), now).real > 0)))
             case Call("delta", _):
                 return ZERO
-            case Call(function, argument):
-                return Call(function, put(argument))
+        return None
 
-    return put(formula)
+    return rebuilt(formula, switched)
 
 
 def _value(formula: Expression, names: Mapping[str, Any]) -> Any:
