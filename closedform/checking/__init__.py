@@ -1,0 +1,1 @@
+"""Hand derivations held against their model, line by line."""
