@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from typing import Literal as OneOf
 
 from closedform.checking.claim import SourceLine
-from closedform.notation.written.tree import Written
+from closedform.notation.written.tree import Statement, Written
 
 __all__ = ["PASSING", "WORDS", "CheckReport", "LineVerdict", "Slip", "Word"]
 
@@ -51,7 +51,8 @@ class LineVerdict:
     `reason` is one or two sentences in plain text.  `right` is the right form of the value
     claimed, None where there is none to give or the line holds.  `carried_from` is the number
     of the earlier line that a carried line was worked out from.  `notes` are remarks that do
-    not change the verdict: how an ambiguous place was read, for which case it holds.
+    not change the verdict: how an ambiguous place was read, for which case it holds.  `read`
+    are the statements as they were read, to be shown in reports; empty if the line was not read.
     """
 
     line: SourceLine
@@ -62,6 +63,7 @@ class LineVerdict:
     slip: Slip | None = None
     carried_from: int | None = None
     notes: tuple[str, ...] = ()
+    read: tuple[Statement, ...] = ()
 
     @property
     def passes(self) -> bool:
