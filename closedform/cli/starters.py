@@ -10,7 +10,7 @@ from pathlib import Path
 
 from closedform.cli.places import check_folder
 from closedform.document.files import write_whole
-from closedform.document.render import templates_folder
+from closedform.document.templating import templates_folder
 from closedform.errors import InputError
 
 __all__ = ["StarterExistsError", "UnknownStarterError", "copy_starter", "listing", "starters"]

@@ -12,7 +12,8 @@ from closedform.derivation.step import Derivation
 from closedform.document.engine import compile_pdf
 from closedform.document.files import write_whole
 from closedform.document.record import DIGITS, record_text
-from closedform.document.render import check_options, check_template, render
+from closedform.document.render import check_options, render
+from closedform.document.templating import check_template
 from closedform.model.driven.model import DrivenModel
 from closedform.model.model import Model
 from closedform.model.parametric import ParametricModel

@@ -10,15 +10,14 @@ from pathlib import Path
 import pytest
 
 from closedform.derivation.step import Derivation, Step
-from closedform.document import render as module
+from closedform.document import templating as module
 from closedform.document.render import (
     DEPTHS,
-    TemplateError,
     UnknownDepthError,
     UnusableDigitsError,
     render,
-    templates_folder,
 )
+from closedform.document.templating import TemplateError, templates_folder
 from closedform.document.writeup import write_up
 from closedform.errors import InputError
 from closedform.model.building import system

@@ -7,7 +7,7 @@ from pathlib import Path
 import pytest
 
 from closedform import load
-from closedform.document.render import templates_folder
+from closedform.document.templating import templates_folder
 from closedform.document.writeup import write_up
 from tests.document.test_compiled import complaints, log_of
 
