@@ -64,7 +64,8 @@ class Truth:
     `sign` gives the sign of a polynomial in the parameters on the whole case, None if it is
     not fixed: the argument is a mapping from exponent vectors (order of `parameters`) to
     rational coefficients.  `samples` are admissible rational values of the parameters, at least
-    three different ones where there are parameters; `value` are the values in the model file.
+    three different ones where there are parameters; `values` are the values in the model file.
+    `equations` are parameters that the condition gives by the others, each with its formula.
     """
 
     states: tuple[str, ...]
@@ -89,3 +90,4 @@ class Truth:
     samples: tuple[Mapping[str, Written], ...] = ()
     values: Mapping[str, Written] | None = None
     inputs: Mapping[str, tuple[Piece, ...]] = field(default_factory=dict)
+    equations: tuple[tuple[str, Written], ...] = ()

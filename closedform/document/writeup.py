@@ -26,11 +26,8 @@ from closedform.verification.driven.verify import verify_driven
 from closedform.verification.parametric.numbers import numbers_check
 from closedform.verification.parametric.record import CaseRecords
 from closedform.verification.parametric.verify import verify_cases
-from closedform.verification.record import (
-    ResponseRefutedError,
-    UnprovedError,
-    VerificationRecord,
-)
+from closedform.verification.record import VerificationRecord
+from closedform.verification.refusal import require_proved
 from closedform.verification.verify import verify
 
 __all__ = ["WriteUp", "write_up"]
@@ -104,7 +101,7 @@ def _made(model: Model | ParametricModel | DrivenModel, digits: int) -> _Made:
 def _in_numbers(model: Model, digits: int) -> _Made:
     response = respond(model)
     verification = verify(response)
-    _refuse(model.name, verification)
+    require_proved(model.name, verification)
     derivation = derive(response, verification, digits=digits)
     return _Made(response, VerificationRecord(derivation.checks), derivation)
 
@@ -117,7 +114,7 @@ def _in_cases(model: ParametricModel, digits: int) -> _Made:
     if model.values is not None or not model.field.free:
         whole = (*records.whole.checks, numbers_check(response, numbers[0], digits=digits))
         records = CaseRecords(VerificationRecord(whole), records.cases)
-    _refuse(model.name, records)
+    require_proved(model.name, records)
     derivation = derive_cases(response, records, digits=digits, numbers=numbers)
     records = CaseRecords(VerificationRecord(derivation.checks), records.cases)
     return _Made(response, records, derivation, numbers_of(response, digits=DIGITS))
@@ -127,20 +124,12 @@ def _driven(model: DrivenModel, digits: int) -> _Made:
     response = respond_driven(model)
     found = verify_driven(response)
     numbers = driven_numbers_of(response, digits=digits)
-    _refuse(model.name, found)
+    require_proved(model.name, found)
     derivation = derive_driven(response, found, digits=digits, numbers=numbers)
     proved = VerificationRecord(derivation.checks)
     verification = CaseRecords(proved, found.cases) if isinstance(found, CaseRecords) else proved
     exact = driven_numbers_of(response, digits=DIGITS)
     return _Made(response, verification, derivation, exact)
-
-
-def _refuse(name: str, verification: VerificationRecord | CaseRecords) -> None:
-    """Raise unless everything holds."""
-    if verification.left_open and not verification.refuted:
-        raise UnprovedError(name, verification.left_open)
-    if not verification.holds:
-        raise ResponseRefutedError(name, verification.refuted)
 
 
 def write_pdf(write_up: WriteUp) -> Path:

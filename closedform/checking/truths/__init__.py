@@ -1,0 +1,1 @@
+"""The truth about a model, case by case, from its proved response."""
