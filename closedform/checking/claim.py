@@ -5,9 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 
 from closedform.errors import Place
-from closedform.notation.written.tree import Reading, Written
+from closedform.notation.written.tree import Statement, Written
 
-__all__ = ["KINDS", "Claim", "SourceLine"]
+__all__ = ["KINDS", "Claim", "Group", "SourceLine"]
 
 KINDS = (
     "matrix",
@@ -50,11 +50,13 @@ for something, `equation` one of the model's own."""
 
 @dataclass(frozen=True, slots=True)
 class SourceLine:
-    """A line as it was found: one displayed formula, or one claim of a claim file.
+    r"""A line as it was found: one displayed formula, or one claim of a claim file.
 
     `number` counts from 1.  `text` is LaTeX, or typed if `typed`.  `says`, `of`, `at` and
     `where` are what the author, or a comment beside the line, states about it; empty if nothing.
-    `place` is where the text begins.
+    `place` is where the text begins.  `label` is that of a \label, if there is one.
+    `trouble` is empty, or says why the text must not be read as it stands: it uses a macro whose
+    definition was not followed.  Such a line is `not read`.
     """
 
     number: int
@@ -65,22 +67,50 @@ class SourceLine:
     of: str = ""
     at: str = ""
     where: str = ""
+    label: str = ""
+    trouble: str = ""
 
 
 @dataclass(frozen=True, slots=True)
 class Claim:
-    """A line that was read: `says` is one of `KINDS`, `subject` whose value is claimed.
+    """One thing that a line says: `says` is one of `KINDS`, `subject` whose value is claimed.
 
-    `subject` is a state, output or other name, with primes for derivatives (x1'), or empty.
-    `value` are the members of the chain that claim the value; a name on the left is left out.
-    `at` is the instant of a value, `of` the eigenvalue of an eigenvector.
+    `subject` is a state, output or other name, with primes for derivatives (x1'), or empty;
+    `names` are the names on the left of the chain, `values` the members that claim the value.
+    Eigenvalues have one entry in `groups` for each statement, the others one group.
+    `at` is the instant of a value, `of` the eigenvalue of an eigenvector.  `stated` says that
+    the author said so in words, `approximate` that a sign like ≈ stands in it, `equation` that
+    it ends in "= 0".
     """
 
     line: SourceLine
-    reading: Reading
+    statements: tuple[Statement, ...]
     says: str
     subject: str = ""
-    values: tuple[Written, ...] = ()
+    groups: tuple[Group, ...] = ()
     of: Written | None = None
     at: Written | None = None
+    stated: bool = False
     approximate: bool = False
+    equation: bool = False
+    sign: int = 1
+
+    @property
+    def values(self) -> tuple[Written, ...]:
+        """The members that claim a value, of all groups."""
+        return tuple(value for group in self.groups for value in group.values)
+
+    @property
+    def names(self) -> tuple[Written, ...]:
+        """The names on the left, of all groups."""
+        return tuple(name for group in self.groups for name in group.names)
+
+
+@dataclass(frozen=True, slots=True)
+class Group:
+    """A statement taken apart: the names on its left, and the values that they are to have."""
+
+    names: tuple[Written, ...]
+    values: tuple[Written, ...]
+    unit: str = ""
+    note: str = ""
