@@ -66,6 +66,8 @@ class Truth:
     rational coefficients.  `samples` are admissible rational values of the parameters, at least
     three different ones where there are parameters; `values` are the values in the model file.
     `equations` are parameters that the condition gives by the others, each with its formula.
+    Balls of eigenvalues and `enclosures` are those at `values`, where the case has these, else
+    at the first sample; `enclosures_at` gives the latter at any values of all parameters.
     """
 
     states: tuple[str, ...]
@@ -91,3 +93,4 @@ class Truth:
     values: Mapping[str, Written] | None = None
     inputs: Mapping[str, tuple[Piece, ...]] = field(default_factory=dict)
     equations: tuple[tuple[str, Written], ...] = ()
+    enclosures_at: Callable[[Mapping[str, Written]], Mapping[str, arb]] = lambda _: {}

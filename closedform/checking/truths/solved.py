@@ -3,11 +3,17 @@
 from __future__ import annotations
 
 from closedform.checking.truth import Truth
+from closedform.checking.truths.in_cases import truths_in_cases
 from closedform.checking.truths.in_numbers import truth_in_numbers
+from closedform.checking.truths.when_driven import truths_when_driven
 from closedform.model.driven.model import DrivenModel
 from closedform.model.model import Model
 from closedform.model.parametric import ParametricModel
+from closedform.response.driven.response import respond_driven
+from closedform.response.parametric.response import respond_in_cases
 from closedform.response.response import respond
+from closedform.verification.driven.verify import verify_driven
+from closedform.verification.parametric.verify import verify_cases
 from closedform.verification.refusal import require_proved
 from closedform.verification.verify import verify
 
@@ -20,10 +26,17 @@ def truths_of(model: Model | ParametricModel | DrivenModel) -> tuple[Truth, ...]
     The cases come in the order of the response, generic ones first.
 
     Raises:  ResponseRefutedError, UnprovedError if the response does not hold; what
-             `closedform.response.solving.respond` raises.
+             `closedform.response.solving.respond` raises; UnendingSolutionError where inputs
+             repeat for ever, or very often.
     """
     if isinstance(model, Model):
         response = respond(model)
         require_proved(model.name, verify(response))
         return (truth_in_numbers(response),)
-    raise NotImplementedError
+    if isinstance(model, ParametricModel):
+        in_cases = respond_in_cases(model)
+        require_proved(model.name, verify_cases(in_cases))
+        return truths_in_cases(in_cases)
+    driven = respond_driven(model)
+    require_proved(model.name, verify_driven(driven))
+    return truths_when_driven(driven)

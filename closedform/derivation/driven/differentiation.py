@@ -44,8 +44,8 @@ class _Term:
 def derivative_of(formula: Expression, variable: str) -> Expression:
     """Return the derivative of a formula with respect to a variable.
 
-    Raises TypeError for what is no sum, product, power of the variable, exponential, sine or
-    cosine, circular or hyperbolic, or where the variable stands in a divisor.
+    Raises TypeError for what is no sum, product, whole power, exponential, sine or cosine,
+    circular or hyperbolic, or where the variable stands in a divisor.
     """
     if variable not in names_in(formula):
         return ZERO
@@ -64,8 +64,9 @@ def derivative_of(formula: Expression, variable: str) -> Expression:
             )
         case Quotient(above, below) if variable not in names_in(below):
             return times([derivative_of(above, variable), Quotient(ONE, below)])
-        case Power(Name() as base, Number(exponent)) if exponent.denominator == 1:
-            return times([number(exponent), power_of(base, int(exponent) - 1)])
+        case Power(base, Number(exponent)) if exponent.denominator == 1 and exponent:
+            below = power_of(base, int(exponent) - 1)
+            return times([number(exponent), below, derivative_of(base, variable)])
         case Call(function, argument) if function in _DERIVED:
             sign, name = _DERIVED[function]
             return times([number(sign), derivative_of(argument, variable), Call(name, argument)])
