@@ -7,8 +7,6 @@ from collections.abc import Callable, Iterable
 from typing import Any
 
 from closedform.derivation.step import Side, Statement, Step, Symbol
-from closedform.document.latex import cell, decimal, inline, mixed
-from closedform.document.tables import decimal_tables
 from closedform.document.units import unit_latex
 from closedform.notation.expression import Call, Expression, Name, Power, Product, number
 from closedform.notation.latex.escape import escaped
@@ -82,11 +80,6 @@ def pair(real: str, frequency: str) -> Symbol:
     return Symbol("pair", parts=(middle, Name(frequency)))
 
 
-def relate(*sides: Side) -> str:
-    """Return sides joined by equals signs within a line of text."""
-    return inline(Statement("", sides))
-
-
 def counted(count: int, singular: str, plural: str) -> str:
     """Return a number, in words up to twelve, with its noun."""
     return f"{WORDS[count] if count < len(WORDS) else count} {singular if count == 1 else plural}"
@@ -122,10 +115,6 @@ def quotient(several: bool) -> Side:  # noqa: FBT001  called from templates only
 FILTERS: dict[str, Callable[..., Any]] = {
     "text": escaped,
     "unit": unit_latex,
-    "math": inline,
-    "cell": cell,
-    "mixed": mixed,
-    "decimal": decimal,
     "said": said,
     "field": field,
     "listed": listed,
@@ -134,9 +123,7 @@ FILTERS: dict[str, Callable[..., Any]] = {
 
 FUNCTIONS: dict[str, Callable[..., Any]] = {
     "counted": counted,
-    "decimal_tables": decimal_tables,
     "symbol": symbol,
-    "relate": relate,
     "name": Name,
     "times": times,
     "exponential": exponential,

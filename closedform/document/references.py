@@ -9,15 +9,20 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from closedform.derivation.step import Statement
-from closedform.document.display import Display, displayed, displayed_together
+from closedform.document.display import Display
+from closedform.document.printed import Printed
 
 __all__ = ["References"]
 
 
 class References:
-    """Labels asked for and labels set, of the pass before and of this one."""
+    """Labels asked for and labels set, of the pass before and of this one.
+
+    `printed` is what this pass has put into the document.
+    """
 
     def __init__(self) -> None:
+        self.printed = Printed()
         self.asked_before: frozenset[str] = frozenset()
         self.set_before: frozenset[str] = frozenset()
         self.asked: set[str] = set()
@@ -27,14 +32,15 @@ class References:
         """Keep what this pass has found and begin the next."""
         self.asked_before, self.set_before = frozenset(self.asked), frozenset(self.set)
         self.asked, self.set = set(), set()
+        self.printed.clear()
 
     def display(self, statement: Statement, label: str = "", by: str = "auto") -> Display:
         """Return the statement as a display, numbered if some sentence refers to `label`."""
         name = f"eq:{label}"
         if not label or name in self.set:
-            return displayed(statement, by=by)
+            return self.printed.display(statement, "", by)
         self.set.add(name)
-        return displayed(statement, label=name if name in self.asked_before else "", by=by)
+        return self.printed.display(statement, name if name in self.asked_before else "", by)
 
     def displays(self, statements: Sequence[Statement], label: str = "") -> list[Display]:
         """Return the statements below each other, in one display if no matrix is taken apart.
@@ -45,7 +51,7 @@ class References:
         fresh = [name for name in names if label and name not in self.set]
         self.set.update(fresh)
         labels = [name if name in fresh and name in self.asked_before else "" for name in names]
-        return displayed_together(statements, labels)
+        return self.printed.together(statements, labels)
 
     def cite(self, label: str, words: str) -> str:
         """Return the words and, if that equation is printed, its number."""

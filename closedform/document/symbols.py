@@ -91,7 +91,7 @@ from closedform.notation.latex.box import (
 from closedform.notation.latex.formula import formula
 from closedform.notation.latex.names import name_box
 
-__all__ = ["ANY_ROW", "KINDS", "added", "side_box", "symbol_box"]
+__all__ = ["ANY_ROW", "KINDS", "added", "index_text", "side_box", "symbol_box"]
 
 ANY_ROW = r"\cdot"
 """The first index of an entry that stands for a whole column."""
@@ -153,12 +153,17 @@ def _polynomial(symbol: Symbol) -> Box:
 
 def _entry(symbol: Symbol) -> Box:
     body = side_box(symbol.parts[0])
+    index = index_text(symbol)
+    width = 0.42 * len(index.replace(ANY_ROW, "").replace(r"\ldots ", "..."))
+    return Box(rf"\bigl({body.latex}\bigr)_{{{index}}}", body.width + 1.0 + width)
+
+
+def index_text(symbol: Symbol) -> str:
+    """Return the indices of an entry as they are set."""
     # 1,12 could be read as 11,2 without the comma; the dot of a column cannot
     row = symbol.indices[0]
     comma = " " if row == ANY_ROW else "," if any(len(i) > 1 for i in symbol.indices) else ""
-    index = comma.join(symbol.indices)
-    width = 0.42 * len(index.replace(ANY_ROW, "").replace(r"\ldots ", "..."))
-    return Box(rf"\bigl({body.latex}\bigr)_{{{index}}}", body.width + 1.0 + width)
+    return comma.join(symbol.indices)
 
 
 def _pair(symbol: Symbol) -> Box:

@@ -19,11 +19,15 @@ DIGIT = 0.52
 
 @dataclass(frozen=True, slots=True)
 class DecimalTable:
-    """A table for booktabs: the column specification, the head and the rows, as LaTeX."""
+    """A table for booktabs: the column specification, the head and the rows, as LaTeX.
+
+    `places` are the columns of the whole table that it shows.
+    """
 
     columns: str
     head: str
     rows: tuple[str, ...]
+    places: tuple[int, ...] = ()
 
 
 def decimal_tables(header: Sequence[Side], rows: Sequence[Sequence[str]]) -> list[DecimalTable]:
@@ -63,7 +67,7 @@ def _table(
 ) -> DecimalTable:
     head = " & ".join(rf"\multicolumn{{2}}{{c}}{{{inline(header[j])}}}" for j in group)
     lines = tuple(" & ".join(_cell(row[j]) for j in group) for row in rows)
-    return DecimalTable("r@{}l" * len(group), head, lines)
+    return DecimalTable("r@{}l" * len(group), head, lines, tuple(group))
 
 
 def _cell(text: str) -> str:

@@ -8,7 +8,6 @@ from importlib.resources.abc import Traversable
 from pathlib import Path
 from typing import TYPE_CHECKING, TypeVar
 
-from closedform.document.beside import displayed_beside
 from closedform.document.display import narrow
 from closedform.document.latex import fits
 from closedform.document.phrases import FILTERS, FUNCTIONS
@@ -135,12 +134,21 @@ def environment(template: str | Path, references: References) -> Environment:
         undefined=StrictUndefined,
         autoescape=False,  # LaTeX, not HTML: text of the user's goes through `text`
     )
+    printed = references.printed
     made.filters |= FILTERS
+    made.filters |= {
+        "math": printed.math,
+        "cell": printed.cell,
+        "mixed": printed.mixed,
+        "decimal": printed.decimal,
+    }
     made.globals |= FUNCTIONS
     made.globals |= {
         "display": references.display,
         "displays": references.displays,
-        "beside": displayed_beside,
+        "beside": printed.beside,
+        "relate": printed.relate,
+        "decimal_tables": printed.tabled,
         "cite": references.cite,
         "refer": references.refer,
         "section_label": references.section,
