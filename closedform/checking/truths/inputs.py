@@ -8,12 +8,7 @@ from closedform.derivation.driven.writing import Writing
 from closedform.model.driven.model import DrivenModel
 from closedform.notation.expression import ZERO, Expression, Name
 
-__all__ = ["drives_of", "inputs_of", "repeats"]
-
-
-def repeats(model: DrivenModel) -> bool:
-    """Whether an input repeats."""
-    return any(given.signal.repeat is not None for given in model.inputs)
+__all__ = ["drives_of", "inputs_of"]
 
 
 def inputs_of(model: DrivenModel) -> dict[str, tuple[Expression, ...]]:

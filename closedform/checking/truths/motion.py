@@ -15,7 +15,6 @@ from closedform.checking.truths.formulas import (
     with_derivatives,
     written_from,
 )
-from closedform.checking.truths.inputs import repeats
 from closedform.checking.truths.limits import limit_of
 from closedform.model.driven.model import DrivenModel
 from closedform.notation.expression import Expression
@@ -33,7 +32,7 @@ def labels_of(model: DrivenModel) -> tuple[str, ...]:
 
 @dataclass(frozen=True)
 class Motion:
-    """A solution with its intervals; of inputs that repeat it has one formula for all times."""
+    """A solution with its intervals; no input repeats."""
 
     solution: DrivenSolution
 
@@ -52,28 +51,20 @@ class Motion:
         return tuple(zip(starts, [*ends[1:], None], strict=True))
 
     def pieces(self) -> dict[str, tuple[Piece, ...]]:
-        """Return the solution: states, eliminated unknowns, outputs, further derivatives.
-
-        Raises:  UnendingSolutionError where inputs repeat for ever, or very often.
-        """
-        if repeats(self.model):
-            formulas = [(formula,) for formula in self.solution.solution]
-            return pieces_of(self._named(formulas), [(self.spans[0][0], None)])
+        """Return the solution: states, eliminated unknowns, outputs, further derivatives."""
         columns = zip(*self.solution.pieces, strict=True)
         return pieces_of(self._with_derivatives(self._named(list(columns))), self.spans)
 
     def particular(self) -> dict[str, tuple[Piece, ...]]:
         """Return what the inputs sustain in each interval, free terms left out."""
         sustained = self.solution.functions.sustained
-        if not self.model.inputs or not sustained or repeats(self.model):
+        if not self.model.inputs or not sustained:
             return {}
         columns = zip(*map(self.solution.in_interval, sustained), strict=True)
         return pieces_of(self._with_derivatives(self._named(list(columns))), self.spans)
 
     def steady(self) -> dict[str, Written]:
         """Return what is left of the solution when the rest has decayed, where that is known."""
-        if repeats(self.model):
-            return {}
         found = self.solution.steady_state
         if found is not None:
             functions = self._named([(formula,) for formula in found.steady_formulas])

@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 from closedform.checking.truth import Truth
+from closedform.checking.truths.errors import RepeatingInputError
 from closedform.checking.truths.in_cases import truths_in_cases
 from closedform.checking.truths.in_numbers import truth_in_numbers
 from closedform.checking.truths.when_driven import truths_when_driven
 from closedform.model.driven.model import DrivenModel
 from closedform.model.model import Model
 from closedform.model.parametric import ParametricModel
+from closedform.notation.plain import plain
 from closedform.response.driven.response import respond_driven
 from closedform.response.parametric.response import respond_in_cases
 from closedform.response.response import respond
@@ -25,9 +27,9 @@ def truths_of(model: Model | ParametricModel | DrivenModel) -> tuple[Truth, ...]
 
     The cases come in the order of the response, generic ones first.
 
-    Raises:  ResponseRefutedError, UnprovedError if the response does not hold; what
-             `closedform.response.solving.respond` raises; UnendingSolutionError where inputs
-             repeat for ever, or very often.
+    Raises:  ResponseRefutedError, UnprovedError if the response does not hold;
+             RepeatingInputError if an input repeats; ValuesNotCoveredError if the values of
+             the model file belong to no case; what `closedform.response.solving.respond` raises.
     """
     if isinstance(model, Model):
         response = respond(model)
@@ -37,6 +39,9 @@ def truths_of(model: Model | ParametricModel | DrivenModel) -> tuple[Truth, ...]
         in_cases = respond_in_cases(model)
         require_proved(model.name, verify_cases(in_cases))
         return truths_in_cases(in_cases)
+    for given in model.inputs:
+        if given.signal.repeat is not None:
+            raise RepeatingInputError(model.name, plain(given.formula))
     driven = respond_driven(model)
     require_proved(model.name, verify_driven(driven))
     return truths_when_driven(driven)

@@ -17,7 +17,7 @@ from closedform.checking.truths.formulas import (
 )
 from closedform.checking.truths.in_case import CaseTruth, InCase, cases_in_order
 from closedform.checking.truths.in_numbers import named_quantities, values_of_open
-from closedform.checking.truths.inputs import drives_of, inputs_of, repeats
+from closedform.checking.truths.inputs import drives_of, inputs_of
 from closedform.checking.truths.motion import Motion, labels_of
 from closedform.notation.expression import Expression
 from closedform.response.driven.response import DrivenResponse
@@ -32,12 +32,10 @@ Rows = tuple[tuple[Expression, ...], ...]
 
 
 def truths_when_driven(response: DrivenResponse) -> tuple[Truth, ...]:
-    """Return the truth about each case of a driven response, which is proved.
+    """Return the truth about each case of a driven response, which is proved; no input repeats.
 
     Eigenvalues, characteristic polynomial and e^(At) are those of the states alone, without
     what makes the inputs.
-
-    Raises:  UnendingSolutionError where inputs repeat for ever, or very often.
     """
     stacked = response.stacked
     if isinstance(stacked, ParametricResponse):
@@ -113,9 +111,8 @@ def _plain(solution: DrivenSolution, transition: Rows) -> CaseTruth:
     field, n = model.field, len(model.names)
     reduction = model.reduction
     spans = motion.spans
-    once = not repeats(model)
     written = n <= LARGEST_WRITTEN_OUT and transition
-    drives = dict(zip(labels_of(model), drives_of(model) if once else (), strict=False))
+    drives = dict(zip(labels_of(model), drives_of(model), strict=False))
     return CaseTruth(
         states=labels_of(model)[:n],
         jets=tuple((jet.name, jet.order) for jet in reduction.jets),
@@ -134,5 +131,5 @@ def _plain(solution: DrivenSolution, transition: Rows) -> CaseTruth:
         drive=tuple(pieces_of(drives, spans).values()),
         particular=motion.particular(),
         steady=motion.steady(),
-        inputs=pieces_of(inputs_of(model), spans) if once else {},
+        inputs=pieces_of(inputs_of(model), spans),
     )
