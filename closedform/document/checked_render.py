@@ -1,0 +1,103 @@
+"""A checked derivation through the templates to the text of a report."""
+
+from __future__ import annotations
+
+import re
+from pathlib import Path
+
+from closedform.checking.claim import KINDS
+from closedform.checking.verdict import CheckReport
+from closedform.document.checked_formulas import formula_of, statement_of, typed
+from closedform.document.checked_words import (
+    MEANINGS,
+    capitalised,
+    counts,
+    outcome,
+    place_of,
+    slip_words,
+    tally,
+)
+from closedform.document.references import References
+from closedform.document.templating import answered, environment, shortened
+from closedform.notation.latex.escape import escaped
+from closedform.notation.latex.names import derivatives_of
+from closedform.notation.written.latex_form import latex_name
+
+__all__ = ["MAIN", "render_check"]
+
+NAME = re.compile(r"[A-Za-z][A-Za-z0-9_]{0,30}'{0,6}")
+LONGEST_WORD, SHORT = 16, 8
+SHELF = r"\hspace{0pt}"
+UNKNOWN = re.compile(r"\[U\+[0-9A-F]+\]")
+"""What stands for a letter that TeX has no glyph for."""
+
+MINUS = re.compile(r"(?<![\w)\-])-(?=[\w(])")
+
+MAIN = "check.tex.j2"
+"""The file of a template that a report is made by."""
+
+
+def render_check(report: CheckReport, *, template: str | Path = "latex") -> str:
+    """Return the report as the text of a LaTeX document.
+
+    The author's formulas are set from what was read; text that was not read is printed
+    letter by letter.  `template` is as in `render`.  The same report gives the same text.
+
+    Raises:  TemplateError if the template is not there or fails.
+    """
+    found = environment(template, References())
+    found.filters |= {
+        "formula": formula_of,
+        "statement": statement_of,
+        "typed": typed,
+        "place_of": place_of,
+        "slip_words": slip_words,
+        "sentence": capitalised,
+        "prose": prose,
+        "narrowed": narrowed,
+        "subject": subject,
+    }
+    tallied = counts(report)
+    values: dict[str, object] = {
+        "report": report,
+        "dense": False,
+        "foot": shortened(report.title),
+        "tally": tally(report),
+        "outcome": outcome(report),
+        "meanings": {word: text for word, text in MEANINGS.items() if tallied[word]},
+    }
+    with derivatives_of(report.time):
+        return answered(template, lambda: found.get_template(MAIN).render(values))
+
+
+def prose(text: str) -> str:
+    r"""Return a sentence with formulas in plain notation as LaTeX: a minus is no hyphen.
+
+    >>> prose("It is -1, not 1.")
+    'It is \\ensuremath{-}1, not 1.'
+    """
+    return escaped(MINUS.sub("\N{MINUS SIGN}", text))
+
+
+def narrowed(text: str) -> str:
+    """Return what stands in a narrow column: as `subject`, but long words break anywhere."""
+    if all(len(word) <= LONGEST_WORD for word in text.split()) and "[U+" not in escaped(text):
+        return subject(text)
+    parts = [
+        SHELF.join(escaped(word[i : i + SHORT]) for i in range(0, len(word), SHORT))
+        for word in text.split()
+    ]
+    return UNKNOWN.sub(lambda sign: sign.group() + SHELF, " ".join(parts))
+
+
+def subject(says: str) -> str:
+    r"""Return what a line says as LaTeX, the name behind the kind of claim as a symbol.
+
+    >>> subject("solution x1"), subject("P inverse")
+    ('solution $x_{1}$', 'P inverse')
+    """
+    kind = next((k for k in sorted(KINDS, key=len)[::-1] if says.startswith(f"{k} ")), "")
+    name = says[len(kind) :].strip()
+    if kind and NAME.fullmatch(name):
+        return f"{kind} ${latex_name(name)}$"
+    return prose(says)
