@@ -66,7 +66,9 @@ class Equations:
             value, slopes = plan(u)
             residual = value - true
             size = abs(true).max(abs(value))
-            size = arb(1) if size.contains(0) else arb(size.abs_upper())
+            size = arb(size.abs_upper())
+            if true.contains(0):  # nothing to measure by: differences of numbers of about 1
+                size = size.max(arb(1))
             for part in (_real, _imaginary):
                 row = [
                     sum((part(slopes[i]) for i in group if i in slopes), arb(0))

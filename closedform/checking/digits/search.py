@@ -102,6 +102,10 @@ def _better(
     return min(one, other, key=_fault)
 
 
+def _last_place(literal: Literal) -> Fraction:
+    return literal.last_place
+
+
 def _fault(found: tuple[Judged, ...]) -> tuple[int, int]:
     wrong = [j for j in found if j.verdict != "right"]
     return sum(not is_rounding(j) for j in wrong), len(wrong)
@@ -135,16 +139,15 @@ class _Search:
         if solution is None:
             return None
         best: tuple[Judged, ...] | None = None
-        for free in islice(_choices(system, solution, scale, finest), _MOST_TRIED):
-            moved: list[arb] | None = solution
-            if len(free) < len(groups):
-                start = [solution[i] if i in free else printed[i] for i in everything]
-                moved = refined(system, start, scale, free)
+        for free, others in islice(_choices(system, solution, scale, finest), _MOST_TRIED):
+            fixed = printed if others is None else others
+            start = [solution[i] if i in free else fixed[i] for i in everything]
+            moved = start if start == solution else refined(system, start, scale, free)
             balls = None if moved is None else certified(system, moved, free)
             if balls is None:
                 self.is_unproved = self.is_unproved or moved is not None
                 continue
-            for i in set(everything).difference(free):
+            for i in set(everything).difference(free) if others is None else ():
                 balls[i] = ball_of(finest[i].value)
             best = _better(best, self._judged(system, balls))
             if best is not None and _fault(best) == (0, 0):
@@ -162,25 +165,29 @@ class _Search:
 
 def _choices(
     system: Equations, solution: Sequence[arb], scale: Sequence[arb], literals: Sequence[Literal]
-) -> Iterator[list[int]]:
+) -> Iterator[tuple[list[int], Sequence[arb] | None]]:
     """Yield sets of unknowns that the equations determine once the others are fixed.
 
     The first are the decimals with most digits.  Another set has no fewer decimals, and each
-    of its numbers at most one digit fewer: 0.5 is no rounding of 0.503 beside 1.273.
+    of its numbers at most one digit fewer: 0.5 is no rounding of 0.503 beside 1.273.  The
+    others are fixed as printed, or at last, if all have about as many digits, at the values
+    that come with the set: 1.41 and 1.41 are right in a sum that is to be 2.828.
     """
     ranks = [(literal.is_decimal, significant_digits(literal)) for literal in literals]
     order = sorted(range(len(literals)), key=ranks.__getitem__, reverse=True)
     first, idle = determined(system, solution, scale, order)
-    yield first
+    yield first, None
     matter = [i for i in order if i not in idle]
     if len(matter) == len(first):
         return
+
+    def near(one: int, other: int) -> bool:
+        return ranks[one][0] == ranks[other][0] and ranks[one][1] >= ranks[other][1] - 1
+
     for chosen in islice(combinations(matter, len(first)), _MOST_CHOICES):
-        near = all(
-            ranks[i][0] == ranks[k][0] and ranks[i][1] >= ranks[k][1] - 1
-            for i, k in zip(chosen, first, strict=True)
-        )
-        if list(chosen) != first and near:
+        if list(chosen) != first and all(map(near, chosen, first)):
             independent, _ = determined(system, solution, scale, chosen)
             if len(independent) == len(first):
-                yield list(chosen)
+                yield list(chosen), None
+    if all(near(i, matter[0]) for i in matter):
+        yield first, solution
