@@ -1,0 +1,95 @@
+"""What the author of a derivation has stated so far, right or wrong."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field, replace
+
+from closedform.checking.claim import Claim
+from closedform.notation.written.tree import Symbol, Written, changed
+
+__all__ = ["Author", "Entry"]
+
+
+@dataclass(frozen=True, slots=True)
+class Entry:
+    """A claim that was made: its value as written, definitions put in.
+
+    `values` has the last member of each group.  `root` is the number of the line on which its
+    being wrong rests, itself or an earlier one, None if it is right.
+    """
+
+    claim: Claim
+    values: tuple[Written, ...]
+    root: int | None = None
+
+    @property
+    def says(self) -> str:
+        """What it claims."""
+        return self.claim.says
+
+    @property
+    def value(self) -> Written:
+        """Its value, where there is one."""
+        return self.values[-1]
+
+
+@dataclass(frozen=True)
+class Author:
+    """The claims of a derivation in order, as far as they were judged.
+
+    `definitions` are names that lines gave to numbers or matrices, with what they stand for;
+    `definition_roots` are the lines on which those rest that are wrong, `right_values` what these ought to be.
+    """
+
+    entries: tuple[Entry, ...] = ()
+    definitions: Mapping[str, Written] = field(default_factory=dict)
+    definition_roots: Mapping[str, int] = field(default_factory=dict)
+    right_values: Mapping[str, Written] = field(default_factory=dict)
+    kept: frozenset[str] = frozenset()
+
+    def after(
+        self, entry: Entry, names: Mapping[str, Written], right: Mapping[str, Written]
+    ) -> Author:
+        """Return the author after a further claim, with the names that it defines.
+
+        Names of a wrong claim rest on the line of its root.
+        """
+        roots = {name: root for name, root in self.definition_roots.items() if name not in names}
+        if entry.root is not None:
+            roots |= dict.fromkeys(names, entry.root)
+        return replace(
+            self,
+            entries=(*self.entries, entry),
+            definitions={**self.definitions, **names},
+            definition_roots=roots,
+            right_values={**self.right_values, **right},
+        )
+
+    def all(self, says: str, subject: str | None = None) -> tuple[Entry, ...]:
+        """Return the claims of a kind, the latest first; about one subject if that is given."""
+        return tuple(
+            entry
+            for entry in reversed(self.entries)
+            if entry.says == says
+            and entry.values
+            and (subject is None or entry.claim.subject == subject)
+        )
+
+    def last(self, says: str, subject: str | None = None) -> Entry | None:
+        """Return the latest claim of a kind."""
+        return next(iter(self.all(says, subject)), None)
+
+    def put_in(self, tree: Written) -> Written:
+        """Return a formula with the author's names replaced by what they stand for.
+
+        Names among `kept` stay: those that the model itself gives a meaning.
+        """
+        known = {n: v for n, v in self.definitions.items() if n not in self.kept}
+        if not known:
+            return tree
+
+        def change(node: Written) -> Written | None:
+            return known.get(node.name) if isinstance(node, Symbol) else None
+
+        return changed(tree, change)

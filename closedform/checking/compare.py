@@ -1,0 +1,141 @@
+"""Whether what was written equals what is true: exactly, to the digits shown, or not at all."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Literal as OneOf
+
+from closedform.algebra.elementary import Element, NotElementaryError
+from closedform.checking.digits import DigitsMatch, match_digits, told
+from closedform.checking.errors import NotJudgedError, SizeError
+from closedform.checking.exact import Scope, Value, exact
+from closedform.checking.ground import Ground
+from closedform.checking.matrices import ExactMatrix
+from closedform.checking.spread import spread
+from closedform.checking.written_back import written_back
+from closedform.notation.written.tree import Literal, Symbol, Written, walk
+
+__all__ = ["Comparison", "compare"]
+
+
+@dataclass(frozen=True, slots=True)
+class Comparison:
+    """How a member of a chain stands to the value that it ought to have.
+
+    `how` is equal; digits: equal to the digits shown; rounding: of the right form with digits
+    that are off by what rounding on the way explains; different.  `reason` tells it.
+    `entry` is where a matrix differs first, counted from 1; `true` is the true value.
+    """
+
+    how: OneOf["equal", "digits", "rounding", "different"]
+    reason: str = ""
+    entry: tuple[int, int] | None = None
+    wrong: tuple[tuple[int, int], ...] = ()
+    match: DigitsMatch | None = None
+
+    @property
+    def passes(self) -> bool:
+        """Whether the member may stand."""
+        return self.how in ("equal", "digits")
+
+
+def compare(
+    claimed: Written,
+    true: Value,
+    scope: Scope,
+    ground: Ground,
+    *,
+    approximate: bool = False,
+) -> Comparison:
+    """Return how a formula stands to a true value, a number, a function or a matrix.
+
+    Raises:  NotJudgedError where neither exact algebra nor balls decide.
+    """
+    try:
+        value = exact(claimed, scope)
+    except NotElementaryError as error:
+        return _by_digits(claimed, true, ground, unless=error.reason, approximate=approximate)
+    except ZeroDivisionError:
+        return Comparison("different", "it divides by zero")
+    shapes = _shape(value), _shape(true)
+    if shapes[0] != shapes[1]:
+        return Comparison("different", str(SizeError("a comparison", *_as_sizes(shapes))))
+    different = _differing(value, true)
+    if not different:
+        return Comparison("equal")
+    if has_decimals(claimed) or approximate:
+        found = _by_digits(claimed, true, ground, unless="", approximate=approximate)
+        if found.how != "different":
+            return found
+        return Comparison("different", found.reason, different[0], different, found.match)
+    return Comparison("different", "", different[0], different)
+
+
+def has_decimals(tree: Written) -> bool:
+    """Whether a formula has printed decimals, which may be rounded."""
+    return any(isinstance(node, Literal) and node.is_decimal for node in walk(tree))
+
+
+def _by_digits(
+    claimed: Written, true: Value, ground: Ground, *, unless: str, approximate: bool
+) -> Comparison:
+    """Compare by the printed digits; without any, `unless` is why nothing is decided."""
+    if not (has_decimals(claimed) or approximate):
+        raise NotJudgedError(unless)
+    pairs = _pairs(claimed, true)
+    variables = sorted(
+        {n.name for pair in pairs for tree in pair for n in walk(tree) if isinstance(n, Symbol)}
+        - set(ground.enclosed)
+    )
+    match = match_digits(
+        pairs,
+        variables,
+        ground.quantities,
+        approximate=approximate,
+        between=ground.between,
+        samples=ground.truth.samples,
+    )
+    if match.kind == "right":
+        return Comparison("digits", told(match), match=match)
+    if match.kind == "rounding":
+        return Comparison("rounding", told(match), match=match)
+    return Comparison("different", told(match), match=match)
+
+
+def _pairs(claimed: Written, true: Value) -> tuple[tuple[Written, Written], ...]:
+    if isinstance(true, Element):
+        return ((claimed, written_back(true)),)
+    rows = spread(claimed)
+    if rows is None:
+        raise NotJudgedError("its entries are not written one by one")
+    return tuple(
+        (one, written_back(other))
+        for row, truth in zip(rows, true.rows, strict=True)
+        for one, other in zip(row, truth, strict=True)
+    )
+
+
+def _shape(value: Value) -> tuple[int, int] | None:
+    return value.shape if isinstance(value, ExactMatrix) else None
+
+
+def _as_sizes(
+    shapes: Sequence[tuple[int, int] | None],
+) -> tuple[tuple[int, int], tuple[int, int]]:
+    one, other = ((1, 1) if shape is None else shape for shape in shapes)
+    return one, other
+
+
+def _differing(value: Value, true: Value) -> tuple[tuple[int, int], ...]:
+    """Return the places, counted from 1, in which two values of one shape differ."""
+    if isinstance(value, Element) or isinstance(true, Element):
+        assert isinstance(value, Element)  # noqa: S101  shapes are equal
+        assert isinstance(true, Element)  # noqa: S101
+        return () if (value - true).is_zero else ((1, 1),)
+    return tuple(
+        (i + 1, j + 1)
+        for i, (row, truth) in enumerate(zip(value.rows, true.rows, strict=True))
+        for j, (one, other) in enumerate(zip(row, truth, strict=True))
+        if not (one - other).is_zero
+    )

@@ -1,0 +1,177 @@
+"""Judging one claim, whatever it says, and what its author has stated afterwards."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, replace
+
+from closedform.algebra.elementary import NotElementaryError
+from closedform.checking.author import Author, Entry
+from closedform.checking.balls import NoValueError
+from closedform.checking.claim import Claim, Group
+from closedform.checking.compare import has_decimals
+from closedform.checking.consequences import carried_from
+from closedform.checking.errors import NotJudgedError
+from closedform.checking.exact import both_signs
+from closedform.checking.judge_functions import (
+    judge_block_exponential,
+    judge_equation,
+    judge_homogeneous,
+    judge_particular,
+    judge_solution,
+    judge_steady,
+    judge_transform,
+    judge_transition,
+)
+from closedform.checking.judge_numbers import (
+    QUANTITIES,
+    judge_definition,
+    judge_identity,
+    judge_quantity,
+    judge_value,
+)
+from closedform.checking.judge_spectrum import (
+    judge_characteristic,
+    judge_eigenvalues,
+    judge_matrix,
+)
+from closedform.checking.judge_vectors import (
+    judge_canonical,
+    judge_eigenvector,
+    judge_inverse,
+    judge_transformation,
+)
+from closedform.checking.left_sides import base_and_indices
+from closedform.checking.setting import Finding, Setting
+from closedform.notation.written.tree import Symbol, Written
+
+__all__ = ["Judgement", "judge", "judged", "stated"]
+
+Judge = Callable[[Claim, Setting], Finding]
+JUDGES: Mapping[str, Judge] = {
+    "matrix": judge_matrix,
+    "characteristic polynomial": judge_characteristic,
+    "eigenvalues": judge_eigenvalues,
+    "eigenvector": judge_eigenvector,
+    "generalized eigenvector": judge_eigenvector,
+    "P": judge_transformation,
+    "P inverse": judge_inverse,
+    "J": judge_canonical,
+    "real form": judge_canonical,
+    "exp J": judge_block_exponential,
+    "exp A": judge_transition,
+    "solution": judge_solution,
+    "output": judge_solution,
+    "particular solution": judge_particular,
+    "homogeneous solution": judge_homogeneous,
+    "steady state": judge_steady,
+    "transform": judge_transform,
+    "equation": judge_equation,
+    "value": judge_value,
+    "initial value": judge_value,
+    "identity": judge_identity,
+    "definition": judge_definition,
+    **dict.fromkeys(QUANTITIES, judge_quantity),
+}
+"""What judges each kind of claim; kinds that are not here are judged as identities."""
+OUTSIDE = (NotJudgedError, NotElementaryError, NoValueError, ZeroDivisionError)
+
+
+@dataclass(frozen=True, slots=True)
+class Judgement:
+    """The finding on a claim; `carried_from` is the wrong line on which a carried one rests."""
+
+    claim: Claim
+    finding: Finding
+    carried_from: int | None = None
+
+
+def judge(claim: Claim, setting: Setting) -> Finding:
+    """Return the finding on a claim by itself, whatever came before it.
+
+    What cannot be decided is `not read`, with the reason.
+    """
+    try:
+        return JUDGES.get(claim.says, judge_identity)(claim, setting)
+    except ZeroDivisionError:
+        return Finding("fails", "it divides by zero")
+    except OUTSIDE as error:
+        return Finding("not read", str(error))
+
+
+def judged(claim: Claim, setting: Setting) -> Judgement:
+    """Return the finding on a claim, carried where it follows from an earlier wrong line."""
+    finding = judge(claim, setting)
+    if finding.word != "fails":
+        return Judgement(claim, finding)
+    try:
+        root = carried_from(claim, setting) or _by_mended_names(claim, setting)
+    except OUTSIDE:
+        root = None
+    if root is None:
+        return Judgement(claim, finding)
+    return Judgement(claim, replace(finding, word="carried"), root)
+
+
+def _by_mended_names(claim: Claim, setting: Setting) -> int | None:
+    """Return the root of a wrong definition with whose right value the claim would hold."""
+    author = setting.author
+    mended = {
+        name: author.right_values[name]
+        for name in author.definition_roots
+        if name in author.right_values
+    }
+    if not mended:
+        return None
+    right = replace(author, definitions={**author.definitions, **mended})
+    if not judge(claim, replace(setting, author=right)).passes:
+        return None
+    return min(author.definition_roots[name] for name in mended)
+
+
+def stated(author: Author, judgement: Judgement) -> Author:
+    """Return the author after a claim, with the names that it gives to things."""
+    claim, finding = judgement.claim, judgement.finding
+    values = tuple(author.put_in(group.values[-1]) for group in claim.groups if group.values)
+    root = judgement.carried_from
+    if finding.word == "fails":
+        root = claim.line.number
+    entry = Entry(replace(claim, groups=_opened(claim, author)), values, root)
+    names = dict(_named(claim, author))
+    right = dict.fromkeys(names, finding.right) if finding.right is not None else {}
+    return author.after(entry, names, right if len(names) == 1 else {})
+
+
+def _opened(claim: Claim, author: Author) -> tuple[Group, ...]:
+    return tuple(
+        replace(group, values=tuple(author.put_in(v) for v in group.values))
+        for group in claim.groups
+    )
+
+
+def _named(claim: Claim, author: Author) -> list[tuple[str, Written]]:
+    """Return what the names on the left of a claim stand for from now on.
+
+    The first member without decimals is taken, else the last; lambda_{1,2} with plus-or-minus
+    names two numbers.
+    """
+    found: list[tuple[str, Written]] = []
+    for group in claim.groups:
+        if not group.values:
+            continue
+        value = next((v for v in group.values if not has_decimals(v)), group.values[-1])
+        opened = author.put_in(value)
+        several = both_signs(opened)
+        for name in group.names:
+            if not isinstance(name, Symbol):
+                continue
+            base, index = base_and_indices(name.name)
+            indices = index.split("_")
+            if len(several) == 2:
+                own = indices if len(indices) == 2 else ["1", "2"]
+                found += [(f"{base}_{i}", v) for i, v in zip(own, several, strict=True)]
+            else:
+                found.append((name.name, opened))
+                if claim.says == "eigenvalues" and len(indices) > 1:
+                    found += [(f"{base}_{i}", opened) for i in indices]
+    return found

@@ -1,0 +1,399 @@
+"""Judging functions of time: e^(Jt), e^(At), solutions and their parts, transforms, equations."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import replace
+from fractions import Fraction
+from functools import partial
+from itertools import pairwise
+from typing import Protocol
+
+from closedform.algebra.elementary import Element
+from closedform.checking.claim import Claim
+from closedform.checking.errors import NotJudgedError
+from closedform.checking.exact import Value, applies, exact
+from closedform.checking.exponential import matrix_exponential
+from closedform.checking.ground import SPECTRAL, Ground, Stretch
+from closedform.checking.judge_vectors import authors_diagonal, authors_matrix, matrix_value
+from closedform.checking.judging import held_against
+from closedform.checking.matrices import ExactMatrix, characteristic_coefficients, column
+from closedform.checking.setting import Finding, Setting
+from closedform.checking.similar import is_block_form, is_similar
+from closedform.checking.written_back import written_back
+from closedform.notation.written.tree import Array, Range, Symbol, Written, walk
+
+__all__ = [
+    "judge_block_exponential",
+    "judge_equation",
+    "judge_homogeneous",
+    "judge_particular",
+    "judge_solution",
+    "judge_steady",
+    "judge_transform",
+    "judge_transition",
+    "solution_value",
+]
+
+
+def judge_transition(claim: Claim, setting: Setting) -> Finding:
+    """Judge e^(At)."""
+
+    def true(ground: Ground) -> Value:
+        return ground.transition
+
+    def right(ground: Ground) -> Written | None:
+        rows = ground.truth.transition
+        if ground.scope.symbols == setting.ground.scope.symbols and rows is not None:
+            return Array(rows)
+        return written_back(ground.transition)
+
+    return held_against(claim, setting, true, right)
+
+
+def judge_block_exponential(claim: Claim, setting: Setting) -> Finding:
+    """Judge e^(Jt) for the author's J, the diagonal of the author's eigenvalues, or any J.
+
+    Without either, the line has to be the exponential of a matrix in blocks similar to A.
+    """
+
+    def own(ground: Ground) -> ExactMatrix | None:
+        for says in ("J", "real form"):
+            found = authors_matrix(says, setting, ground)
+            if found is not None and found.is_square:
+                return found
+        return None
+
+    def true(ground: Ground) -> Value:
+        matrix = own(ground)
+        if matrix is None:
+            raise NotJudgedError("no J is stated")
+        return matrix_exponential(matrix, [v for v in ground.eigenvalues if v is not None])
+
+    if own(setting.ground) is not None:
+        return held_against(claim, setting, true, lambda ground: written_back(true(ground)))
+    return _any_block_exponential(claim, setting)
+
+
+def _any_block_exponential(claim: Claim, setting: Setting) -> Finding:
+    ground = setting.ground_for(*map(setting.opened, claim.values))
+    value = matrix_value(claim.values[-1], setting, ground)
+    if value.shape != (ground.size, ground.size):
+        return Finding("fails", "it has not the size of A")
+    rate = value.mapped(Element.derivative).mapped(lambda e: e.at(ground.field.zero))
+    diagonal = authors_diagonal(setting, ground) or ground.jordan
+    if is_similar(rate, ground) and is_block_form(rate):
+        found = matrix_exponential(rate, [v for v in ground.eigenvalues if v is not None])
+        if (found - value).is_zero:
+            return Finding("holds")
+        return Finding("fails", "it is no exponential", written_back(found))
+    right = None
+    if diagonal is not None:
+        right = written_back(matrix_exponential(diagonal))
+    return Finding("fails", "it is not the exponential of a form of A in blocks", right)
+
+
+def judge_solution(claim: Claim, setting: Setting) -> Finding:
+    """Judge the solution of a state or output, or of all states as a column.
+
+    With constants of integration that nothing defines it is judged as the general solution.
+    """
+    constants = _constants(claim, setting)
+    if constants:
+        return _general(claim, setting, constants)
+    return _on_stretches(
+        claim,
+        setting,
+        lambda ground, stretch: solution_value(claim.subject, ground, stretch),
+        lambda ground: _solution_tree(claim.subject, ground),
+    )
+
+
+def solution_value(subject: str, ground: Ground, stretch: Stretch) -> Value:
+    """Return the true solution of a state, a derivative, an output, or of all states.
+
+    Raises NotJudgedError if the model has nothing of that name.
+    """
+    if subject == "vector" or ground.facts.has_vector(subject.rstrip("'")):
+        value = ground.column(stretch)
+        for _ in range(len(subject) - len(subject.rstrip("'"))):
+            value = value.mapped(Element.derivative)
+        return value
+    found = ground.function(subject, stretch)
+    if found is None:
+        base = subject.rstrip("'")
+        found = ground.function(base, stretch)
+        if found is None:
+            raise NotJudgedError(f"the model has no state, unknown or output called {base}")
+        for _ in range(len(subject) - len(base)):
+            found = found.derivative()
+    return found
+
+
+def _solution_tree(subject: str, ground: Ground) -> Written | None:
+    if len(ground.stretches) != 1:
+        return None
+    tree = ground.piece_tree(subject, ground.stretches[0])
+    if tree is not None and not ground.put_in:
+        return tree
+    try:
+        return written_back(solution_value(subject, ground, ground.stretches[0]))
+    except NotJudgedError:
+        return None
+
+
+class SolutionOn(Protocol):
+    """The true value of a claim on an interval."""
+
+    def __call__(self, ground: Ground, stretch: Stretch) -> Value:
+        """Return it."""
+
+
+def _on_stretches(
+    claim: Claim,
+    setting: Setting,
+    true: SolutionOn,
+    right: Callable[[Ground], Written | None],
+) -> Finding:
+    """Judge the members of a claim on every interval to which the line applies."""
+    findings = []
+    for stretch in _stretches(claim, setting):
+        inside = replace(setting, ground=setting.ground.within(stretch))
+        findings.append(held_against(claim, inside, partial(true, stretch=stretch), right))
+    worst = next((f for f in findings if not f.passes), None)
+    if worst is not None:
+        return worst
+    digits = next((f for f in findings if f.word == "holds to the digits shown"), None)
+    return digits or findings[0]
+
+
+def _stretches(claim: Claim, setting: Setting) -> Iterator[Stretch]:
+    """Yield the intervals that the conditions beside a line leave; all if there are none."""
+    ground = setting.ground
+    ranges = [r for statement in claim.statements for r in statement.conditions]
+    timed = [r for r in ranges if Symbol(ground.facts.time) in r.members and "→" not in r.signs]
+    found = False
+    for stretch in ground.stretches:
+        if all(_inside(range_, stretch, setting) for range_ in timed):
+            found = True
+            yield stretch
+    if not found:
+        raise NotJudgedError("no interval of the solution lies in the range that is stated")
+
+
+def _inside(range_: Range, stretch: Stretch, setting: Setting) -> bool:
+    scope = replace(setting.scope_of(setting.ground), instant=stretch.inside)
+    return applies(range_, scope)
+
+
+def _constants(claim: Claim, setting: Setting) -> list[str]:
+    """Return the names of constants of integration: those that nothing gives a meaning."""
+    facts = setting.ground.facts
+    opened = [setting.opened(value) for value in claim.values]
+    names = {n.name for tree in opened for n in walk(tree) if isinstance(n, Symbol)}
+    unknown = names - facts.names - {"A", "P", "J"}
+    shaped = {name for name in unknown if name.rstrip("0123456789_") in CONSTANTS}
+    return sorted(unknown) if unknown and unknown == shaped else []
+
+
+CONSTANTS = frozenset({"c", "C", "k", "K", "a", "A", "B", "b", "alpha", "beta", "D", "E", "F"})
+"""Letters that constants of integration go by (common practice)."""
+
+
+def _general(claim: Claim, setting: Setting, constants: list[str]) -> Finding:
+    """Judge a general solution: the true one plus functions that the free equation allows."""
+    whole = claim.says != "homogeneous solution"
+    return _modulo_free(claim, setting, whole=whole, constants=constants)
+
+
+def judge_particular(claim: Claim, setting: Setting) -> Finding:
+    """Judge a particular solution: it may differ from another by any free response."""
+    return _modulo_free(claim, setting, whole=True, constants=_constants(claim, setting))
+
+
+def judge_homogeneous(claim: Claim, setting: Setting) -> Finding:
+    """Judge a solution of the free equations."""
+    return _modulo_free(claim, setting, whole=False, constants=_constants(claim, setting))
+
+
+def _modulo_free(claim: Claim, setting: Setting, *, whole: bool, constants: list[str]) -> Finding:
+    """Judge whether a function, less the true solution if `whole`, satisfies the free equations.
+
+    A column x has to satisfy x' = A x; a single function is sent to zero by the
+    characteristic polynomial in d/dt, as every component of a free response is.
+    """
+    last: Finding | None = None
+    for stretch in _stretches(claim, setting):
+        for member in claim.values:
+            opened = setting.opened(member)
+            ground = setting.ground_for(opened).within(stretch)
+            scope = setting.scope_of(ground)
+            scope = scope.with_symbols({c: ground.field.name(c) for c in constants})
+            value = exact(opened, scope)
+            if whole:
+                value = _minus(value, solution_value(claim.subject, ground, stretch))
+            rest = _free_residual(value, ground)
+            if not rest.is_zero:
+                return Finding(
+                    "fails",
+                    "it does not satisfy the equations",
+                    _particular(claim, ground),
+                )
+            last = Finding("holds", notes=_count_note(constants))
+    if last is None:
+        raise NotJudgedError("no function is given")
+    return last
+
+
+def _count_note(constants: list[str]) -> tuple[str, ...]:
+    if not constants:
+        return ()
+    return (f"a general solution with the constants {', '.join(constants)}",)
+
+
+def _minus(one: Value, other: Value) -> Value:
+    match one, other:
+        case Element(), Element():
+            return one - other
+        case ExactMatrix(), ExactMatrix():
+            return one - other
+    raise NotJudgedError("a function stands where a column is wanted, or the other way round")
+
+
+def _free_residual(value: Value, ground: Ground) -> Value:
+    if isinstance(value, ExactMatrix):
+        return value.mapped(Element.derivative) - ground.matrix @ value
+    total, derivative = ground.field.zero, value
+    for coefficient in characteristic_coefficients(ground.matrix):
+        total, derivative = total + coefficient * derivative, derivative.derivative()
+    return total
+
+
+def _particular(claim: Claim, ground: Ground) -> Written | None:
+    if claim.says != "particular solution":
+        return None
+    pieces = ground.truth.particular.get(claim.subject, ())
+    return pieces[0].formula if len(pieces) == 1 and not ground.put_in else None
+
+
+def judge_steady(claim: Claim, setting: Setting) -> Finding:
+    """Judge a steady state: the limit, or what persists when the free response has died away."""
+
+    def true(ground: Ground) -> Value:
+        names = ground.truth.states if _is_vector(claim, ground) else (claim.subject,)
+        values = [_steady_value(name, ground) for name in names]
+        return column(ground.field, values) if _is_vector(claim, ground) else values[0]
+
+    def right(ground: Ground) -> Written | None:
+        try:
+            return written_back(true(ground))
+        except NotJudgedError:
+            return None
+
+    finding = held_against(claim, setting, true, right)
+    if finding.passes or not finding.pairs:
+        return finding
+    return finding
+
+
+def _is_vector(claim: Claim, ground: Ground) -> bool:
+    return claim.subject == "vector" or ground.facts.has_vector(claim.subject)
+
+
+def _steady_value(name: str, ground: Ground) -> Element:
+    tree = ground.truth.steady.get(name)
+    if tree is not None:
+        return ground.number(tree)
+    last = ground.stretches[-1]
+    value = solution_value(name, ground, last)
+    limit = value.limit() if isinstance(value, Element) else None
+    if limit is None:
+        raise NotJudgedError(f"{name or 'the model'} has no steady state that is known")
+    return limit
+
+
+def judge_transform(claim: Claim, setting: Setting) -> Finding:
+    """Judge the Laplace transform of a solution that is one formula from the time 0 on."""
+    ground = setting.ground
+    if len(ground.stretches) != 1 or not ground.stretches[0].start.is_zero:
+        raise NotJudgedError("the transform is held against a solution that begins at 0 only")
+
+    def true(ground: Ground) -> Value:
+        value = solution_value(claim.subject, ground, ground.stretches[0])
+        return _entrywise(value, laplace)
+
+    def prepare(member: Written) -> Written:
+        known = ground.facts.names
+        names = {n.name for n in walk(member) if isinstance(n, Symbol)} - known
+        if len(names) != 1:
+            raise NotJudgedError("it is not told which name is the variable of the transform")
+        return setting.renamed(member, names)
+
+    return held_against(
+        claim, setting, true, lambda g: written_back(true(g), TRANSFORM_NAMES), prepare=prepare
+    )
+
+
+TRANSFORM_NAMES = {SPECTRAL: "s"}
+
+
+def laplace(value: Element) -> Element:
+    """Return the Laplace transform of an exponential polynomial, in the spectral variable.
+
+    Source: t^k e^(lambda t) goes to k!/(s - lambda)^(k + 1); R. V. Churchill, Operational
+    Mathematics (1972), table of transforms.
+    """
+    field = value.field
+    s, total = field.name(SPECTRAL), field.zero
+    terms = value.terms()
+    if terms is None:
+        raise NotJudgedError("the transform of this function is not known")
+    for rate, constant, power, coefficient in terms:
+        factorial = 1
+        for k in range(2, power + 1):
+            factorial *= k
+        weight = coefficient * field.exp(constant) * field.number(Fraction(factorial))
+        total = total + weight / (s - rate) ** (power + 1)
+    return total
+
+
+def _entrywise(value: Value, change: Callable[[Element], Element]) -> Value:
+    return value.mapped(change) if isinstance(value, ExactMatrix) else change(value)
+
+
+def judge_equation(claim: Claim, setting: Setting) -> Finding:
+    """Judge an equation between unknowns, their derivatives and the inputs: one of the model's.
+
+    The derivatives are expressed by the states, x' = A x + B u, and the equation has to hold
+    for every state.
+    """
+    ground = setting.ground_for(*map(setting.opened, claim.values))
+    for stretch in _stretches(claim, setting):
+        inside = ground.within(stretch)
+        scope = replace(setting.scope_of(inside), jets=_jets(inside, stretch))
+        sides = [exact(setting.opened(member), scope) for member in claim.values]
+        for one, other in pairwise(sides):
+            if not _minus(one, other).is_zero:
+                return Finding("fails", "it does not follow from the model")
+    return Finding("holds")
+
+
+def _jets(ground: Ground, stretch: Stretch) -> dict[tuple[str, int], Element]:
+    """Return states as free names, and the derivatives that follow as functions of these."""
+    field, truth = ground.field, ground.truth
+    free = [field.name(f"state {k}") for k in range(ground.size)]
+    drive = ground.drive(stretch)
+    rates = []
+    for k, row in enumerate(ground.matrix.rows):
+        total = drive[k] if drive else field.zero
+        for entry, state in zip(row, free, strict=True):
+            total = total + entry * state
+        rates.append(total)
+    jets: dict[tuple[str, int], Element] = dict(zip(truth.jets, free, strict=True))
+    for (name, order), rate in zip(truth.jets, rates, strict=True):
+        jets.setdefault((name, order + 1), rate)
+    for name in truth.inputs:
+        value = ground.input(name, stretch)
+        if value is not None:
+            jets[name, 0] = value
+    return jets

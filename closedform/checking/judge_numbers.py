@@ -1,0 +1,182 @@
+"""Judging single numbers: values at an instant, frequencies and other quantities, identities."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from fractions import Fraction
+
+from closedform.algebra.elementary import Element, NotElementaryError
+from closedform.checking.claim import Claim
+from closedform.checking.compare import compare
+from closedform.checking.errors import NotJudgedError, UnknownNameError
+from closedform.checking.exact import Value
+from closedform.checking.ground import Ground
+from closedform.checking.judge_functions import solution_value
+from closedform.checking.judging import held_against
+from closedform.checking.matrices import ExactMatrix
+from closedform.checking.setting import Finding, Setting
+from closedform.checking.written_back import written_back
+from closedform.notation.written.tree import Written
+
+__all__ = ["QUANTITIES", "judge_definition", "judge_identity", "judge_quantity", "judge_value"]
+
+
+def judge_value(claim: Claim, setting: Setting) -> Finding:
+    """Judge the value of a state, a derivative or an output at an instant."""
+    if claim.at is None or not claim.subject:
+        return judge_identity(claim, setting)
+
+    def true(ground: Ground) -> Value:
+        assert claim.at is not None  # noqa: S101
+        at = setting.value(claim.at, ground)
+        if isinstance(at, ExactMatrix) or not at.is_constant:
+            raise NotJudgedError("the instant of a value is a number")
+        for stretch in reversed(ground.stretches):
+            if (at - stretch.start).sign() in (0, 1):
+                value = solution_value(claim.subject, ground.within(stretch), stretch)
+                return (
+                    value.at(at) if isinstance(value, Element) else value.mapped(lambda e: e.at(at))
+                )
+        raise NotJudgedError("it is not decided where the instant lies on the time axis")
+
+    return held_against(claim, setting, true, lambda ground: written_back(true(ground)))
+
+
+def judge_quantity(claim: Claim, setting: Setting) -> Finding:
+    """Judge a quantity that belongs to the eigenvalues: any mode of the model may be meant."""
+    failed: Finding | None = None
+    for at in range(len(list(_quantities(claim, setting.ground)))):
+
+        def true(ground: Ground, at: int = at) -> Value:
+            return list(_quantities(claim, ground))[at]
+
+        finding = held_against(claim, setting, true, lambda g: written_back(true(g)))
+        if finding.passes:
+            return finding
+        failed = failed or finding
+    if failed is None:
+        if claim.stated:
+            raise NotJudgedError(f"the model has no {claim.says}")
+        return judge_definition(claim, setting)
+    return failed
+
+
+def _quantities(claim: Claim, ground: Ground) -> Iterator[Element]:
+    """Yield the values that a quantity of this name has, one for each mode of the model."""
+    field = ground.field
+    in_hertz = any(group.unit.strip() in ("Hz", "1/s") for group in claim.groups)
+    turn = (field.number(Fraction(2)) * field.pi) if in_hertz else field.one
+    for half, square in _pairs(ground):
+        yield from _of_pair(claim.says, half, square, turn)
+    if claim.says in ("time constant", "half-life"):
+        for value in ground.eigenvalues:
+            if value is not None and not value.is_zero and field.im(value).is_zero:
+                rate = -(field.one / value)
+                yield (
+                    rate
+                    if claim.says == "time constant"
+                    else rate * field.ln(field.number(Fraction(2)))
+                )
+
+
+def _of_pair(says: str, half: Element, square: Element, turn: Element) -> Iterator[Element]:
+    """Yield a quantity of s^2 + 2 half s + square, for roots that are a pair or real."""
+    field = half.field
+    natural = field.sqrt(square)
+    match says:
+        case "natural frequency":
+            yield natural / turn
+        case "damping ratio":
+            yield half / natural
+        case "damped frequency":
+            yield field.sqrt(square - half * half) / turn
+        case "period":
+            two_pi = field.number(Fraction(2)) * field.pi
+            yield two_pi / field.sqrt(square - half * half)
+            if not half.is_zero:
+                yield two_pi / natural
+        case "time constant":
+            if not half.is_zero:
+                yield field.one / half
+
+
+def _pairs(ground: Ground) -> Iterator[tuple[Element, Element]]:
+    """Yield a and b of the factors s^2 + 2 a s + b that belong to one mode."""
+    two = ground.field.number(Fraction(2))
+    if ground.size == 2:
+        yield -(ground.matrix.trace() / two), ground.matrix.determinant()
+        return
+    field, seen = ground.field, []
+    for value in ground.eigenvalues:
+        if value is None:
+            continue
+        try:
+            real, imaginary = field.re(value), field.im(value)
+        except NotElementaryError:
+            continue
+        square = real * real + imaginary * imaginary
+        if not imaginary.is_zero and (real, square) not in seen:
+            seen.append((real, square))
+            yield -real, square
+
+
+QUANTITIES = frozenset(
+    {
+        "natural frequency",
+        "damped frequency",
+        "damping ratio",
+        "time constant",
+        "half-life",
+        "period",
+    }
+)
+
+
+def judge_identity(claim: Claim, setting: Setting) -> Finding:
+    """Judge a chain by itself: all its members have to be equal.
+
+    The names in it stand for what the model and earlier lines say.
+    """
+    names = list(claim.names)
+    known = [name for name in names if _is_known(name, setting)]
+    members = (*known, *claim.values)
+    if len(members) < 2:
+        if claim.stated or not claim.names:
+            raise NotJudgedError("it does not tell what it is a value of")
+        return Finding("holds", "a definition; nothing is claimed")
+    first = setting.opened(members[0])
+    worst: Finding | None = None
+    for member in members[1:]:
+        opened = setting.opened(member)
+        ground = setting.ground_for(opened)
+        scope = setting.scope_of(ground)
+        value = _first_value(first, setting, ground)
+        found = compare(opened, value, scope, ground, approximate=claim.approximate)
+        if not found.passes:
+            return Finding(
+                "fails",
+                found.reason or "the members are not equal",
+                written_back(value),
+                entries=found.wrong,
+                pairs=((opened, value),),
+            )
+        if found.how == "digits":
+            worst = Finding("holds to the digits shown", found.reason)
+    return worst or Finding("holds")
+
+
+def _first_value(tree: Written, setting: Setting, ground: Ground) -> Value:
+    return setting.value(tree, ground)
+
+
+def _is_known(name: Written, setting: Setting) -> bool:
+    try:
+        setting.value(name)
+    except (UnknownNameError, NotJudgedError, NotElementaryError):
+        return False
+    return True
+
+
+def judge_definition(claim: Claim, setting: Setting) -> Finding:
+    """Judge a line that gives a name to something: its members have to agree with one another."""
+    return judge_identity(claim, setting)

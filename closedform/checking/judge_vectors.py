@@ -1,0 +1,355 @@
+"""Judging eigenvectors, chains, P, its inverse and J, each on the author's own terms."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from flint import acb
+
+from closedform.algebra.elementary import Element, NotElementaryError
+from closedform.checking.claim import Claim
+from closedform.checking.compare import has_decimals
+from closedform.checking.errors import NotJudgedError
+from closedform.checking.exact import Value
+from closedform.checking.ground import Ground
+from closedform.checking.judge_spectrum import eigenvalue_element, roots_claimed
+from closedform.checking.judging import held_against
+from closedform.checking.left_sides import base_and_indices
+from closedform.checking.matrices import ExactMatrix, diagonal, identity
+from closedform.checking.rounded_vectors import rounded_direction
+from closedform.checking.setting import Finding, Setting
+from closedform.checking.similar import is_block_form, is_similar
+from closedform.checking.spread import spread
+from closedform.checking.written_back import written_back
+from closedform.notation.written.plain_form import plain_written
+from closedform.notation.written.tree import Symbol, Written
+
+__all__ = [
+    "authors_diagonal",
+    "authors_matrix",
+    "judge_canonical",
+    "judge_eigenvector",
+    "judge_inverse",
+    "judge_transformation",
+    "matrix_value",
+]
+
+
+def matrix_value(tree: Written, setting: Setting, ground: Ground) -> ExactMatrix:
+    """Return the exact value of what ought to be a matrix.
+
+    Raises NotJudgedError for a number.
+    """
+    value = setting.value(tree, ground)
+    if not isinstance(value, ExactMatrix):
+        raise NotJudgedError("a number stands where a matrix is wanted")
+    return value
+
+
+def authors_matrix(says: str, setting: Setting, ground: Ground) -> ExactMatrix | None:
+    """Return a matrix that the author states, P, J or another, or None."""
+    tree = setting.stated(says)
+    if tree is None:
+        return None
+    try:
+        return matrix_value(tree, setting, ground)
+    except (NotJudgedError, NotElementaryError, ZeroDivisionError):
+        return None
+
+
+def authors_diagonal(setting: Setting, ground: Ground) -> ExactMatrix | None:
+    """Return the diagonal matrix of the author's eigenvalues in their order, if all are listed."""
+    entries = setting.author.all("eigenvalues")
+    found: list[Element] = []
+    for entry in reversed(entries):
+        for forms, count in roots_claimed(entry.claim):
+            value = setting.value(forms[0], ground)
+            if isinstance(value, ExactMatrix):
+                return None
+            found += [value] * (count or 1)
+    return diagonal(ground.field, found) if len(found) == ground.size else None
+
+
+def judge_eigenvector(claim: Claim, setting: Setting) -> Finding:
+    """Judge an eigenvector or a generalized one: not zero, and sent to what it ought to be.
+
+    Whose it is, is told by the author, else by its index among the author's eigenvalues; if
+    neither tells, any eigenvalue does.  Without a word of the author's a vector of a chain
+    may stand where the eigenvalue is defective.
+    """
+    if not claim.values:
+        raise NotJudgedError("no vector is given")
+    worst: Finding | None = None
+    for member in claim.values:
+        opened = setting.opened(member)
+        ground = setting.ground_for(opened, *([claim.of] if claim.of is not None else []))
+        vector = matrix_value(member, setting, ground)
+        if vector.shape[1] != 1 and vector.shape[0] == 1:
+            vector = vector.transposed
+        finding = _vector(claim, vector, opened, setting, ground)
+        if not finding.passes:
+            return finding
+        worst = worst if worst and worst.word == "holds to the digits shown" else finding
+    assert worst is not None  # noqa: S101  there is a member
+    return worst
+
+
+def _vector(
+    claim: Claim, vector: ExactMatrix, member: Written, setting: Setting, ground: Ground
+) -> Finding:
+    if vector.shape != (ground.size, 1):
+        return Finding("fails", f"it has {vector.shape[0]} entries, the model {ground.size} states")
+    if vector.is_zero:
+        return Finding("fails", "it is zero")
+    known = _eigenvalue_of(claim, setting, ground)
+    candidates = [known] if known is not None else list(_closed(ground))
+    generalized = claim.says == "generalized eigenvector"
+    unit = identity(ground.field, ground.size)
+    for value in candidates:
+        shifted = ground.matrix - unit.scaled(value)
+        image = shifted @ vector
+        if image.is_zero and not generalized:
+            return Finding("holds up to scale", "A v = lambda v")
+        chained = generalized or not claim.stated
+        if chained and not image.is_zero and (shifted.power(ground.size) @ vector).is_zero:
+            return _in_chain(image, setting, ground)
+    right = None
+    for value in candidates:
+        kernel = eigenvectors(ground, value)
+        if has_decimals(member) and not generalized and len(kernel) == 1:
+            told = rounded_direction(member, kernel[0])
+            if told is not None:
+                return Finding("holds to the digits shown", told)
+        right = right or (written_back(kernel[0]) if kernel and not generalized else None)
+    other = _other_eigenvalue(vector, ground)
+    reason = "A v is no multiple of v"
+    if other is not None and known is not None:
+        reason = f"it belongs to the eigenvalue {plain_written(written_back(other))}"
+    return Finding("fails", reason, right)
+
+
+def _in_chain(image: ExactMatrix, setting: Setting, ground: Ground) -> Finding:
+    """Tell how the image of a generalized eigenvector stands to the author's vector before it."""
+    before = setting.author.last("generalized eigenvector") or setting.author.last("eigenvector")
+    if before is None:
+        return Finding("holds up to scale", "a vector of a chain")
+    try:
+        vector = matrix_value(before.value, setting, ground)
+    except (NotJudgedError, NotElementaryError):
+        return Finding("holds up to scale", "a vector of a chain")
+    if vector.shape == image.shape and (image - vector).is_zero:
+        return Finding("holds", "(A - lambda I) w = v")
+    return Finding(
+        "holds up to scale", "a vector of a chain, whose image is not the vector before it"
+    )
+
+
+def _eigenvalue_of(claim: Claim, setting: Setting, ground: Ground) -> Element | None:
+    """Return the eigenvalue whose vector is claimed, as far as author and index tell."""
+    if claim.of is not None:
+        value = setting.value(claim.of, ground)
+        if isinstance(value, Element):
+            return _nearest(value, ground)
+    name = claim.names[-1] if claim.names else None
+    if not isinstance(name, Symbol):
+        return None
+    index = base_and_indices(name.name)[1]
+    for entry in setting.author.all("eigenvalues"):
+        if entry.root is not None:
+            continue
+        for group in entry.claim.groups:
+            for own in group.names:
+                if isinstance(own, Symbol) and base_and_indices(own.name)[1] == index and index:
+                    forms = group.values[0]
+                    found = setting.value(forms, ground)
+                    if isinstance(found, Element):
+                        return _nearest(found, ground)
+    return None
+
+
+def _nearest(value: Element, ground: Ground) -> Element:
+    """Return the eigenvalue that a stated one stands for: itself, or the nearest to a decimal."""
+    closed = list(_closed(ground))
+    if value in closed:
+        return value
+    values = ground.sampled()
+    point = value.enclosure(acb(0), values)
+    return min(
+        closed, key=lambda v: float(abs(v.enclosure(acb(0), values) - point).mid()), default=value
+    )
+
+
+def _closed(ground: Ground) -> Iterator[Element]:
+    for at in range(len(ground.eigenvalues)):
+        try:
+            yield eigenvalue_element(ground, at)
+        except NotJudgedError:
+            continue
+
+
+def _other_eigenvalue(vector: ExactMatrix, ground: Ground) -> Element | None:
+    image = ground.matrix @ vector
+    for value in _closed(ground):
+        if (image - vector.scaled(value)).is_zero:
+            return value
+    return None
+
+
+def eigenvectors(ground: Ground, value: Element) -> list[ExactMatrix]:
+    """Return a basis of the eigenvectors of an eigenvalue."""
+    return (ground.matrix - identity(ground.field, ground.size).scaled(value)).kernel()
+
+
+def judge_canonical(claim: Claim, setting: Setting) -> Finding:
+    """Judge J: similar to A, in blocks, in any order; with the author's P if that is stated."""
+
+    def right(ground: Ground) -> Written | None:
+        form = ground.jordan
+        return None if form is None else written_back(form)
+
+    last: Finding | None = None
+    for member in claim.values:
+        opened = setting.opened(member)
+        ground = setting.ground_for(opened)
+        matrix = matrix_value(member, setting, ground)
+        if matrix.shape != (ground.size, ground.size):
+            rows, columns = matrix.shape
+            return Finding(
+                "fails", f"it is {rows} by {columns}, the matrix A has {ground.size} rows"
+            )
+        if not is_similar(matrix, ground):
+            return Finding("fails", "it is not similar to A", right(ground))
+        if not is_block_form(matrix):
+            return Finding("fails", "it is similar to A, but not in blocks", right(ground))
+        last = Finding("holds" if _in_order(matrix, setting, ground) else "holds up to order")
+    if last is None:
+        raise NotJudgedError("no matrix is given")
+    return last
+
+
+def _in_order(matrix: ExactMatrix, setting: Setting, ground: Ground) -> bool:
+    """Whether the diagonal follows the author's list of eigenvalues."""
+    own = authors_diagonal(setting, ground)
+    if own is None:
+        return True
+    size = range(ground.size)
+    return all((own.rows[k][k] - matrix.rows[k][k]).is_zero for k in size) or any(
+        not matrix.rows[k][k].is_zero and not matrix.rows[i][k].is_zero and i > k
+        for k in size
+        for i in size
+    )
+
+
+def judge_transformation(claim: Claim, setting: Setting) -> Finding:
+    """Judge P: invertible, and A P = P J for the author's J, before or after the line.
+
+    Without J the order of the author's eigenvalues is taken, without these any.  Columns in
+    another order than J asks for are right up to order.
+    """
+    last: Finding | None = None
+    for member in claim.values:
+        opened = setting.opened(member)
+        ground = setting.ground_for(opened)
+        matrix = matrix_value(member, setting, ground)
+        if matrix.shape != (ground.size, ground.size):
+            rows, columns = matrix.shape
+            return Finding(
+                "fails", f"it is {rows} by {columns}, the matrix A has {ground.size} rows"
+            )
+        last = _transformation(matrix, opened, setting, ground)
+        if not last.passes:
+            return last
+    if last is None:
+        raise NotJudgedError("no matrix is given")
+    return last
+
+
+def _transformation(
+    matrix: ExactMatrix, member: Written, setting: Setting, ground: Ground
+) -> Finding:
+    try:
+        inverse = matrix.inverse()
+    except ZeroDivisionError:
+        return Finding("fails", "it has no inverse")
+    product = inverse @ ground.matrix @ matrix
+    own = authors_matrix("J", setting, ground) or authors_matrix("real form", setting, ground)
+    if own is not None and own.shape == product.shape and is_similar(own, ground):
+        if (product - own).is_zero:
+            return Finding("holds", "A P = P J")
+        if is_block_form(product):
+            return Finding("holds up to order", "its columns are in another order than J asks for")
+        return Finding("fails", _columns_text(matrix, ground) or "A P is not P J")
+    if not is_block_form(product):
+        if has_decimals(member):
+            finding = _rounded_columns(member, ground)
+            if finding is not None:
+                return finding
+        return Finding("fails", _columns_text(matrix, ground) or "P^-1 A P is not in blocks")
+    order = authors_diagonal(setting, ground)
+    if order is not None and _is_diagonal(product) and not (product - order).is_zero:
+        return Finding("holds up to order", "its columns are in another order than the eigenvalues")
+    return Finding("holds", "P^-1 A P is in blocks")
+
+
+def _rounded_columns(member: Written, ground: Ground) -> Finding | None:
+    """Judge a P with printed decimals column by column, each an eigenvector up to its length."""
+    rows = spread(member)
+    if rows is None or any(k is None for k in ground.eigenvalues):
+        return None
+    kernels = [eigenvectors(ground, value) for value in _closed(ground)]
+    if any(len(kernel) != 1 for kernel in kernels) or len(kernels) != ground.size:
+        return None
+    left, told = list(kernels), []
+    for entries in zip(*rows, strict=True):
+        found = next(
+            ((k, text) for k in left if (text := rounded_direction(entries, k[0])) is not None),
+            None,
+        )
+        if found is None:
+            return None
+        left.remove(found[0])
+        told.append(found[1])
+    return Finding("holds to the digits shown", "; ".join(filter(None, told)))
+
+
+def _columns_text(matrix: ExactMatrix, ground: Ground) -> str:
+    """Return which columns are no eigenvectors, where A has a basis of these."""
+    if any(root.algebraic != root.geometric for root in ground.truth.eigenvalues):
+        return ""
+    wrong = [
+        k + 1
+        for k, entries in enumerate(matrix.columns)
+        if _other_eigenvalue(entries, ground) is None
+    ]
+    if not wrong or any(value is None for value in ground.eigenvalues):
+        return ""
+    listed = ", ".join(map(str, wrong))
+    one = len(wrong) == 1
+    return f"column {listed} is no eigenvector" if one else f"columns {listed} are no eigenvectors"
+
+
+def _is_diagonal(matrix: ExactMatrix) -> bool:
+    return all(
+        entry.is_zero for i, row in enumerate(matrix.rows) for j, entry in enumerate(row) if i != j
+    )
+
+
+def judge_inverse(claim: Claim, setting: Setting) -> Finding:
+    """Judge P^(-1) as the inverse of the author's P; without one, as a matrix of left chains."""
+
+    def true(ground: Ground) -> Value:
+        own = authors_matrix("P", setting, ground)
+        if own is None:
+            raise NotJudgedError("no P is stated whose inverse it is to be")
+        return own.inverse()
+
+    if setting.author.last("P") is not None:
+        return held_against(claim, setting, true, lambda ground: written_back(true(ground)))
+    ground = setting.ground_for(*map(setting.opened, claim.values))
+    matrix = matrix_value(claim.values[-1], setting, ground)
+    if matrix.shape != (ground.size, ground.size):
+        return Finding("fails", "it has not the size of A")
+    try:
+        return _transformation(matrix.inverse(), claim.values[-1], setting, ground)
+    except ZeroDivisionError:
+        return Finding("fails", "it has no inverse")

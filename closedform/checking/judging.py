@@ -1,0 +1,80 @@
+"""Judging the members of a claim against one true value."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+from closedform.checking.claim import Claim
+from closedform.checking.compare import Comparison, compare
+from closedform.checking.errors import NotJudgedError, UnknownNameError
+from closedform.checking.exact import Value
+from closedform.checking.ground import Ground
+from closedform.checking.setting import Finding, Setting
+from closedform.notation.written.tree import Written
+
+__all__ = ["held_against", "place_text"]
+
+
+def held_against(
+    claim: Claim,
+    setting: Setting,
+    true: Callable[[Ground], Value],
+    right: Callable[[Ground], Written | None] = lambda _: None,
+    *,
+    prepare: Callable[[Written], Written] = lambda member: member,
+    values: tuple[Written, ...] | None = None,
+) -> Finding:
+    """Return the finding on a claim all of whose members ought to have one true value.
+
+    `true` and `right` give that value and its formula on a ground; `prepare` changes a member
+    before it is judged.  A member in names that stand for nothing, as P e^(Jt) P^-1 where
+    no P was stated, is left out if another member remains.
+
+    Raises:  NotJudgedError if no member can be judged.
+    """
+    skipped: list[NotJudgedError] = []
+    passed: list[Comparison] = []
+    for value in claim.values if values is None else values:
+        opened = prepare(setting.opened(value))
+        ground = setting.ground_for(opened)
+        scope = setting.scope_of(ground)
+        truth = true(ground)
+        try:
+            found = compare(opened, truth, scope, ground, approximate=claim.approximate)
+        except (UnknownNameError, NotJudgedError) as error:
+            skipped.append(error)
+            continue
+        if not found.passes:
+            return Finding(
+                "fails",
+                failure_text(found),
+                right(ground),
+                entries=found.wrong,
+                pairs=((opened, truth),),
+            )
+        passed.append(found)
+    if not passed:
+        raise skipped[0] if skipped else NotJudgedError("it has no value")
+    notes = tuple(f"a member is not judged: {error}" for error in skipped)
+    if any(found.how == "digits" for found in passed):
+        told = next(found.reason for found in passed if found.how == "digits")
+        return Finding("holds to the digits shown", told, notes=notes)
+    return Finding("holds", notes=notes)
+
+
+def failure_text(found: Comparison) -> str:
+    """Return in words how a member differs."""
+    if found.how == "rounding":
+        return f"the form is right, digits are not: {found.reason}"
+    where = place_text(found.wrong)
+    return ": ".join(part for part in (where, found.reason) if part)
+
+
+def place_text(entries: tuple[tuple[int, int], ...]) -> str:
+    """Return in words which entries of a matrix are wrong; nothing for a single number."""
+    if not entries or entries == ((1, 1),):
+        return ""
+    shown = ", ".join(f"({i}, {j})" for i, j in entries[:4])
+    more = f" and {len(entries) - 4} more" if len(entries) > 4 else ""
+    word = "entry" if len(entries) == 1 else "entries"
+    return f"{word} {shown}{more} differ{'s' if len(entries) == 1 else ''}"

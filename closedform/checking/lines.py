@@ -1,0 +1,58 @@
+"""Reading a line: its formula, and what its author states beside it."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from closedform.checking.claim import SourceLine
+from closedform.checking.facts import Facts
+from closedform.notation.written.reader import read_latex
+from closedform.notation.written.tree import Reading, Written
+from closedform.notation.written.typed_reader import read_typed
+from closedform.notation.written.written_errors import NotReadError
+
+__all__ = ["ReadLine", "read_line"]
+
+
+@dataclass(frozen=True, slots=True)
+class ReadLine:
+    """A line as read; `reading` is None if it was not, and `trouble` says why.
+
+    `of` and `at` are the eigenvalue and the instant that the author states, if formulas.
+    """
+
+    line: SourceLine
+    reading: Reading | None
+    trouble: str = ""
+    of: Written | None = None
+    at: Written | None = None
+
+
+def read_line(line: SourceLine, facts: Facts) -> ReadLine:
+    """Return a line as read with the names of a model."""
+    if line.trouble:
+        return ReadLine(line, None, line.trouble)
+    read = read_typed if line.typed else read_latex
+    try:
+        reading = read(line.text, facts.declared, place=line.place)
+    except NotReadError as error:
+        return ReadLine(line, None, str(error))
+    of = _stated(line.of, facts) if line.says in VECTORS else None
+    at = _stated(line.at, facts) if line.at else None
+    return ReadLine(line, reading, "", of, at)
+
+
+VECTORS = ("eigenvector", "generalized eigenvector")
+
+
+def _stated(text: str, facts: Facts) -> Written | None:
+    """Return what an author states beside a line, LaTeX or typed; None if it is no formula."""
+    if not text.strip():
+        return None
+    read = read_latex if "\\" in text else read_typed
+    try:
+        reading = read(text, facts.declared)
+    except NotReadError:
+        return None
+    members = reading.statements[0].members if reading.statements else ()
+    return members[-1] if members else None

@@ -1,0 +1,216 @@
+"""Matrices whose entries are exact functions of time."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+
+from closedform.algebra.elementary import Element, ElementaryField
+from closedform.checking.errors import SizeError
+
+__all__ = ["ExactMatrix", "characteristic_coefficients", "column", "diagonal", "identity"]
+
+
+@dataclass(frozen=True, slots=True)
+class ExactMatrix:
+    """A matrix over an `ElementaryField`, by rows; at least 1 x 1.
+
+    Operations raise SizeError where sizes do not fit, ZeroDivisionError for the inverse of a
+    singular matrix.
+    """
+
+    field: ElementaryField
+    rows: tuple[tuple[Element, ...], ...]
+
+    @property
+    def shape(self) -> tuple[int, int]:
+        """The numbers of rows and columns."""
+        return len(self.rows), len(self.rows[0])
+
+    @property
+    def is_square(self) -> bool:
+        """Whether it has as many rows as columns."""
+        return self.shape[0] == self.shape[1]
+
+    @property
+    def entries(self) -> tuple[Element, ...]:
+        """Every entry, row by row."""
+        return tuple(entry for row in self.rows for entry in row)
+
+    @property
+    def columns(self) -> tuple[ExactMatrix, ...]:
+        """Its columns, as n x 1 matrices."""
+        return tuple(column(self.field, entries) for entries in zip(*self.rows, strict=True))
+
+    @property
+    def is_zero(self) -> bool:
+        """Whether every entry is zero."""
+        return all(entry.is_zero for entry in self.entries)
+
+    @property
+    def is_constant(self) -> bool:
+        """Whether no entry depends on the time."""
+        return all(entry.is_constant for entry in self.entries)
+
+    def mapped(self, change: Callable[[Element], Element]) -> ExactMatrix:
+        """Return the matrix of what `change` makes of each entry."""
+        return ExactMatrix(self.field, tuple(tuple(map(change, row)) for row in self.rows))
+
+    def __add__(self, other: ExactMatrix) -> ExactMatrix:
+        if self.shape != other.shape:
+            raise SizeError("a sum", self.shape, other.shape)
+        pairs = zip(self.rows, other.rows, strict=True)
+        rows = tuple(tuple(a + b for a, b in zip(one, two, strict=True)) for one, two in pairs)
+        return ExactMatrix(self.field, rows)
+
+    def __neg__(self) -> ExactMatrix:
+        return self.mapped(lambda entry: -entry)
+
+    def __sub__(self, other: ExactMatrix) -> ExactMatrix:
+        return self + -other
+
+    def __matmul__(self, other: ExactMatrix) -> ExactMatrix:
+        if self.shape[1] != other.shape[0]:
+            raise SizeError("a product", self.shape, other.shape)
+        zero = self.field.zero
+        columns = list(zip(*other.rows, strict=True))
+        return ExactMatrix(
+            self.field,
+            tuple(tuple(_dot(row, entries, zero) for entries in columns) for row in self.rows),
+        )
+
+    def scaled(self, factor: Element) -> ExactMatrix:
+        """Return the matrix times a number or function."""
+        return self.mapped(lambda entry: factor * entry)
+
+    @property
+    def transposed(self) -> ExactMatrix:
+        """Its transpose."""
+        return ExactMatrix(self.field, tuple(zip(*self.rows, strict=True)))
+
+    def power(self, exponent: int) -> ExactMatrix:
+        """Return an integer power; a negative one is that of the inverse."""
+        self.demand_square("a power")
+        base = self.inverse() if exponent < 0 else self
+        result = identity(self.field, self.shape[0])
+        for _ in range(abs(exponent)):
+            result = result @ base
+        return result
+
+    def inverse(self) -> ExactMatrix:
+        """Return the inverse, by elimination; pivots are entries that are not zero."""
+        self.demand_square("an inverse")
+        size = self.shape[0]
+        unit = identity(self.field, size)
+        rows = [[*row, *more] for row, more in zip(self.rows, unit.rows, strict=True)]
+        if _reduced(rows, size)[0] < size:
+            raise ZeroDivisionError("the matrix is singular")
+        return ExactMatrix(self.field, tuple(tuple(row[size:]) for row in rows))
+
+    def determinant(self) -> Element:
+        """Return the determinant, by expansion along the sparsest row for small matrices."""
+        self.demand_square("a determinant")
+        return _determinant(self.field, [list(row) for row in self.rows])
+
+    def trace(self) -> Element:
+        """Return the sum of the diagonal."""
+        self.demand_square("a trace")
+        return sum((self.rows[k][k] for k in range(self.shape[0])), self.field.zero)
+
+    def rank(self) -> int:
+        """Return the rank over the field of its entries."""
+        rows = [list(row) for row in self.rows]
+        return _reduced(rows, self.shape[1])[0]
+
+    def kernel(self) -> list[ExactMatrix]:
+        """Return a basis of the columns that it sends to zero."""
+        field, width = self.field, self.shape[1]
+        rows = [list(row) for row in self.rows]
+        _, pivots = _reduced(rows, width)
+        basis = []
+        for free in (k for k in range(width) if k not in pivots):
+            entries = [field.zero] * width
+            entries[free] = field.one
+            for row, pivot in zip(rows, pivots, strict=False):
+                entries[pivot] = -row[free]
+            basis.append(column(field, entries))
+        return basis
+
+    def demand_square(self, what: str) -> None:
+        """Raise SizeError unless it is square."""
+        if not self.is_square:
+            raise SizeError(what, self.shape, None)
+
+
+def identity(field: ElementaryField, size: int) -> ExactMatrix:
+    """Return the unit matrix."""
+    return diagonal(field, [field.one] * size)
+
+
+def diagonal(field: ElementaryField, entries: Sequence[Element]) -> ExactMatrix:
+    """Return the diagonal matrix with given entries."""
+    size = range(len(entries))
+    return ExactMatrix(
+        field, tuple(tuple(entries[i] if i == j else field.zero for j in size) for i in size)
+    )
+
+
+def column(field: ElementaryField, entries: Iterable[Element]) -> ExactMatrix:
+    """Return entries as a column."""
+    return ExactMatrix(field, tuple((entry,) for entry in entries))
+
+
+def characteristic_coefficients(matrix: ExactMatrix) -> list[Element]:
+    """Return the coefficients of det(z I - M), the constant one first, the last one 1.
+
+    Source:  V. N. Faddeeva, Computational Methods of Linear Algebra (1959), section 24.
+    """
+    field, size = matrix.field, matrix.shape[0]
+    coefficients, product = [field.one], identity(field, size)
+    for k in range(1, size + 1):
+        product = matrix @ product
+        value = -(product.trace() / field.number(Fraction(k)))
+        coefficients.append(value)
+        product = product + identity(field, size).scaled(value)
+    return coefficients[::-1]
+
+
+def _dot(row: Sequence[Element], entries: Sequence[Element], zero: Element) -> Element:
+    total = zero
+    for one, other in zip(row, entries, strict=True):
+        if not (one.is_zero or other.is_zero):
+            total = total + one * other
+    return total
+
+
+def _reduced(rows: list[list[Element]], columns: int) -> tuple[int, list[int]]:
+    """Bring rows to reduced echelon form in place; return the rank and the pivots' columns."""
+    rank, pivots = 0, []
+    for k in range(columns):
+        pivot = next((i for i in range(rank, len(rows)) if not rows[i][k].is_zero), None)
+        if pivot is None:
+            continue
+        rows[rank], rows[pivot] = rows[pivot], rows[rank]
+        lead = rows[rank][k]
+        rows[rank] = [entry / lead for entry in rows[rank]]
+        for i, row in enumerate(rows):
+            if i != rank and not row[k].is_zero:
+                factor = row[k]
+                rows[i] = [a - factor * b for a, b in zip(row, rows[rank], strict=True)]
+        pivots.append(k)
+        rank += 1
+    return rank, pivots
+
+
+def _determinant(field: ElementaryField, rows: list[list[Element]]) -> Element:
+    if len(rows) == 1:
+        return rows[0][0]
+    at = max(range(len(rows)), key=lambda i: sum(entry.is_zero for entry in rows[i]))
+    total = field.zero
+    for j, entry in enumerate(rows[at]):
+        if not entry.is_zero:
+            minor = [row[:j] + row[j + 1 :] for i, row in enumerate(rows) if i != at]
+            term = entry * _determinant(field, minor)
+            total = total - term if (at + j) % 2 else total + term
+    return total

@@ -1,0 +1,226 @@
+"""What a line claims, from what its author says about it and from its left side."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import replace
+from fractions import Fraction
+
+from closedform.checking.claim import Claim, Group, SourceLine
+from closedform.checking.facts import Facts
+from closedform.checking.left_sides import Left, base_and_indices, left_of
+from closedform.notation.written.tree import (
+    Array,
+    Jet,
+    Literal,
+    Statement,
+    Symbol,
+    Written,
+    walk,
+)
+
+__all__ = ["claims_of"]
+
+ZERO = Literal(Fraction(0))
+VECTORS = ("v", "u", "w", "xi", "phi", "q", "e", "psi", "eta", "r", "x", "z", "p", "g", "h")
+SPECTRAL = ("lambda", "s", "r", "mu", "z")
+
+
+def claims_of(
+    line: SourceLine,
+    statements: tuple[Statement, ...],
+    facts: Facts,
+    *,
+    of: Written | None = None,
+    at: Written | None = None,
+) -> tuple[Claim, ...]:
+    """Return what a line claims: one claim for each thing it says.
+
+    `of` and `at` are what the author states beside the line, read.
+    """
+    if line.says:
+        return _stated(line, statements, facts, of, at)
+    found: list[Claim] = []
+    roots: list[Statement] = []
+    for statement in statements:
+        left = _left(statement, facts)
+        if (left is not None and left.says == "eigenvalues") or (
+            roots and left is None and len(statement.members) == 1 and not found
+        ):
+            roots.append(statement)
+        else:
+            found.append(_claim(line, statement, left, facts, of, at))
+    if roots:
+        found.insert(0, _eigenvalues(line, tuple(roots), facts))
+    return tuple(found)
+
+
+def _stated(
+    line: SourceLine,
+    statements: tuple[Statement, ...],
+    facts: Facts,
+    of: Written | None,
+    at: Written | None,
+) -> tuple[Claim, ...]:
+    says = line.says
+    if says == "eigenvalues":
+        claim = _eigenvalues(line, statements, facts)
+        return (replace(claim, stated=True),)
+    claims = []
+    for statement in statements:
+        left = _left(statement, facts)
+        subject = line.of if says not in ("eigenvector", "generalized eigenvector") else ""
+        named = left if left is not None and left.says == says else None
+        if named is None and left is not None and says in ("value", "initial value"):
+            named = left if left.says in ("value", "solution", "steady state") else None
+        known = _known_subject(subject, facts)
+        if named is not None and not known:
+            known = named.subject
+        if not known and left is not None and left.says in ("solution", "output", "value"):
+            known = left.subject
+        instant = at if at is not None else (left.at if left is not None else None)
+        sign = left.sign if left is not None else 1
+        claim = _claim(line, statement, Left(says, known, instant, sign), facts, of, instant)
+        claims.append(replace(claim, stated=True))
+    return tuple(claims)
+
+
+def _known_subject(subject: str, facts: Facts) -> str:
+    """Return a subject as the author states it, if it is the name of something of the model."""
+    name = subject.strip()
+    base = name.rstrip("'")
+    if name in facts.states or base in facts.varying or facts.has_vector(base):
+        return name
+    return "vector" if name.lower() in ("vector", "state", "states", "all") else ""
+
+
+def _left(statement: Statement, facts: Facts) -> Left | None:
+    """Return what the left side of a statement names."""
+    first, rest = statement.members[0], statement.members[1:]
+    left = left_of(first, facts) if rest else None
+    if left is not None and left.says == "solution" and _has_jets(rest, facts):
+        left = None
+    if left is None and _is_vector_name(first, rest):
+        return Left("eigenvector", first.name if isinstance(first, Symbol) else "")
+    return left
+
+
+def _claim(
+    line: SourceLine,
+    statement: Statement,
+    left: Left | None,
+    facts: Facts,
+    of: Written | None,
+    at: Written | None,
+) -> Claim:
+    members = statement.members
+    ends_in_zero = len(members) > 1 and members[-1] == ZERO
+    approximate = "≈" in statement.relations
+    if left is None:
+        says, names = _by_shape(statement, facts)
+        values = members[len(names) :]
+        return Claim(
+            line,
+            (statement,),
+            says,
+            groups=(Group(names, values, statement.unit, statement.note),),
+            of=of,
+            at=at,
+            approximate=approximate,
+            equation=ends_in_zero,
+        )
+    names = _names(members, left, facts)
+    values = members[len(names) :]
+    polynomial = left.says == "characteristic polynomial"
+    if polynomial and ends_in_zero:
+        values = values[:-1] if len(values) > 1 or names else values
+    return Claim(
+        line,
+        (statement,),
+        left.says,
+        left.subject,
+        (Group(names, values, statement.unit, statement.note),),
+        of,
+        left.at if left.at is not None else at,
+        approximate=approximate,
+        equation=polynomial and ends_in_zero,
+        sign=left.sign,
+    )
+
+
+def _names(members: tuple[Written, ...], left: Left, facts: Facts) -> tuple[Written, ...]:
+    """Return the leading members that are names of the same thing, never all of them."""
+    count = 0
+    for member in members[:-1]:
+        own = left_of(member, facts)
+        same = own is not None and own.says == left.says
+        if not same and not (count == 0 and _is_name(member)):
+            break
+        count += 1
+    return members[:count]
+
+
+def _is_name(node: Written) -> bool:
+    return isinstance(node, Symbol | Jet)
+
+
+def _by_shape(statement: Statement, facts: Facts) -> tuple[str, tuple[Written, ...]]:
+    """Return what a statement without a telling left side claims, and its names."""
+    members = statement.members
+    if _has_jets(members, facts):
+        return ("equation" if len(members) > 1 else "identity"), ()
+    inside = [node for member in members for node in walk(member)]
+    spectral = {n.name for n in inside if isinstance(n, Symbol)} & (set(SPECTRAL) - facts.names)
+    timed = Symbol(facts.time) in inside
+    if spectral and not timed and (len(members) == 1 or members[-1] == ZERO):
+        return "characteristic polynomial", ()
+    first = members[0]
+    if isinstance(first, Symbol) and len(members) > 1 and first.name not in facts.names:
+        return "definition", members[:1]
+    if isinstance(first, Jet) and len(members) > 1 and first.name not in facts.varying:
+        return "definition", members[:1]
+    return "identity", ()
+
+
+def _has_jets(members: Sequence[Written], facts: Facts) -> bool:
+    """Whether a function of time of the model stands in a formula, at no fixed instant."""
+    return any(
+        isinstance(node, Jet) and node.at is None and node.name in facts.varying
+        for member in members
+        for node in walk(member)
+    )
+
+
+def _is_vector_name(first: Written, rest: Sequence[Written]) -> bool:
+    """Whether a name such as v_1 stands for a column of numbers."""
+    if not isinstance(first, Symbol) or not rest:
+        return False
+    base, _ = base_and_indices(first.name)
+    columns = any(
+        isinstance(node, Array) and (len(node.rows[0]) == 1 or len(node.rows) == 1)
+        for member in rest
+        for node in walk(member)
+    )
+    return base in VECTORS and columns
+
+
+def _eigenvalues(line: SourceLine, statements: tuple[Statement, ...], facts: Facts) -> Claim:
+    """Return the claim of a line that lists eigenvalues, a group for each statement."""
+    groups = []
+    for statement in statements:
+        count = 0
+        for member in statement.members[:-1]:
+            if not _names_root(member, facts):
+                break
+            count += 1
+        values = statement.members[count:]
+        groups.append(Group(statement.members[:count], values, statement.unit, statement.note))
+    approximate = any("≈" in statement.relations for statement in statements)
+    return Claim(line, statements, "eigenvalues", groups=tuple(groups), approximate=approximate)
+
+
+def _names_root(node: Written, facts: Facts) -> bool:
+    left = left_of(node, facts)
+    if left is not None and left.says == "eigenvalues":
+        return True
+    return isinstance(node, Symbol) and node.name not in facts.parameters
