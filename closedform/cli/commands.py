@@ -23,8 +23,8 @@ __all__ = ["app", "main"]
 app = typer.Typer(
     help="Exact, proved closed-form responses of linear models, free or driven by inputs, "
     "written up as LaTeX.",
-    epilog="Exit status: 0 all well, 1 a result was refuted, 2 an input is not usable or too "
-    "extreme to be proved, 3 something outside is missing, such as a TeX engine.",
+    epilog="Exit status: 0 all well, 1 a result or a line was refuted, 2 an input is not "
+    "usable or too extreme to be proved, 3 something outside is missing, such as a TeX engine.",
     no_args_is_help=True,
     add_completion=False,
     rich_markup_mode=None,  # drawn help takes twice as long to appear
@@ -111,6 +111,64 @@ def writeup(  # noqa: PLR0913 - one parameter for each option
 
         wishes = Wishes(into, depth, digits, template, record=record, pdf=pdf)
         return write_models(models, wishes, screen)
+
+    _finish(screen, work)
+
+
+@app.command(short_help="Check hand derivations, line by line, against their model.")
+def check(  # noqa: PLR0913 - one parameter for each option
+    *,
+    sources: Annotated[
+        list[str],
+        typer.Argument(metavar="SOURCE", hidden=True),
+    ],
+    model: Annotated[
+        Path | None,
+        typer.Option(metavar="MODEL.toml", help="The model; not needed if the source names it."),
+    ] = None,
+    into: Annotated[
+        Path, typer.Option(metavar="DIR", help="The folder for the reports; made if missing.")
+    ] = Path("out"),
+    pdf: Annotated[bool, typer.Option("--pdf", help="Compile each report to a PDF, too.")] = False,
+    template: Annotated[
+        str,
+        typer.Option(
+            metavar="NAME-OR-DIR", help="A shipped template, or a folder with files of your own."
+        ),
+    ] = "latex",
+    record: Annotated[
+        bool,
+        typer.Option("--record/--no-record", help="Write NAME.check.json with every verdict."),
+    ] = True,
+    junit: Annotated[
+        bool, typer.Option("--junit", help="Write NAME.check.xml, JUnit for build servers.")
+    ] = False,
+    allow_unread: Annotated[
+        bool, typer.Option("--allow-unread", help="A line that is not read is no fault.")
+    ] = False,
+    quiet: Annotated[bool, typer.Option("--quiet", help="Print nothing but errors.")] = False,
+) -> None:
+    """Hold each line of a derivation against the exact solution of its model.
+
+    A SOURCE is a LaTeX file with displayed formulas, or a TOML list of claims. The
+    report on notes.tex is out/notes.check.tex. The status is 0 if every line holds,
+    1 if one is wrong, 2 if none is wrong but one was not read.
+    """
+    screen = Screen(quiet=quiet)
+
+    def work() -> int:
+        from closedform.cli.check_batch import CheckWishes, check_sources
+
+        wishes = CheckWishes(
+            model,
+            into,
+            template,
+            pdf=pdf,
+            record=record,
+            junit=junit,
+            allow_unread=allow_unread,
+        )
+        return check_sources(sources, wishes, screen)
 
     _finish(screen, work)
 

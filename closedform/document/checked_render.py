@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from closedform.checking.claim import KINDS
 from closedform.checking.verdict import CheckReport
@@ -23,7 +24,10 @@ from closedform.notation.latex.escape import escaped
 from closedform.notation.latex.names import derivatives_of
 from closedform.notation.written.latex_form import latex_name
 
-__all__ = ["MAIN", "render_check"]
+if TYPE_CHECKING:
+    from jinja2 import Environment
+
+__all__ = ["check_report_template", "render_check"]
 
 NAME = re.compile(r"[A-Za-z][A-Za-z0-9_]{0,30}'{0,6}")
 LONGEST_WORD, SHORT = 16, 8
@@ -45,18 +49,7 @@ def render_check(report: CheckReport, *, template: str | Path = "latex") -> str:
 
     Raises:  TemplateError if the template is not there or fails.
     """
-    found = environment(template, References())
-    found.filters |= {
-        "formula": formula_of,
-        "statement": statement_of,
-        "typed": typed,
-        "place_of": place_of,
-        "slip_words": slip_words,
-        "sentence": capitalised,
-        "prose": prose,
-        "narrowed": narrowed,
-        "subject": subject,
-    }
+    found = _environment(template)
     tallied = counts(report)
     values: dict[str, object] = {
         "report": report,
@@ -68,6 +61,14 @@ def render_check(report: CheckReport, *, template: str | Path = "latex") -> str:
     }
     with derivatives_of(report.time):
         return answered(template, lambda: found.get_template(MAIN).render(values))
+
+
+def check_report_template(template: str | Path) -> None:
+    """Find and read the main file of a template, so that a wrong name is told at once.
+
+    Raises:  TemplateError if it is not there or not valid.
+    """
+    answered(template, lambda: _environment(template).get_template(MAIN))
 
 
 def prose(text: str) -> str:
@@ -96,8 +97,26 @@ def subject(says: str) -> str:
     >>> subject("solution x1"), subject("P inverse")
     ('solution $x_{1}$', 'P inverse')
     """
+    if says in KINDS:
+        return says
     kind = next((k for k in sorted(KINDS, key=len)[::-1] if says.startswith(f"{k} ")), "")
     name = says[len(kind) :].strip()
     if kind and NAME.fullmatch(name):
         return f"{kind} ${latex_name(name)}$"
     return prose(says)
+
+
+def _environment(template: str | Path) -> Environment:
+    found = environment(template, References())
+    found.filters |= {
+        "formula": formula_of,
+        "statement": statement_of,
+        "typed": typed,
+        "place_of": place_of,
+        "slip_words": slip_words,
+        "sentence": capitalised,
+        "prose": prose,
+        "narrowed": narrowed,
+        "subject": subject,
+    }
+    return found
