@@ -18,7 +18,7 @@ from closedform.notation.written.tree import (
     walk,
 )
 
-__all__ = ["Between", "Point", "Samples", "points"]
+__all__ = ["Between", "Point", "Samples", "exact_rates", "points"]
 
 Point = dict[str, acb]
 """A value for each variable."""
@@ -48,12 +48,10 @@ def points(
     places turns the phase.  Parameters take the values of `samples` in turn, if there are any.
     """
     used = {part.name for tree in trees for part in walk(tree) if isinstance(part, Symbol)}
-    fixed = [{k: enclose_written(v, {}) for k, v in sample.items()} for sample in samples]
-    sampled = set(fixed[0]) if fixed else set()
-    free = [v for v in variables if v not in sampled]
+    fixed = _fixed(samples)
+    start, free = _start(variables, between, fixed)
     if not used & {*variables, *(n for n, f in names.formulas if f is not None)}:
         count = 1
-    start: Point = {**{v: acb(_low(between, v) + 1) for v in free}, **(fixed[0] if fixed else {})}
     scales = {v: _range(trees, v, names, start, between) for v in free}
     found: list[Point] = []
     for j in range(count):
@@ -67,6 +65,31 @@ def points(
             point[v] = acb(_low(between, v) + step.mid())
         found.append(point)
     return found
+
+
+def exact_rates(
+    tree: Written, variables: Sequence[str], names: Quantities, between: Between, samples: Samples
+) -> list[arb]:
+    """Return the rates of decay or growth and the angular frequencies of a formula, unsigned."""
+    start, free = _start(variables, between, _fixed(samples))
+    found: list[arb] = []
+    for variable in free:
+        for slope, _ in _slopes(tree, variable, names, start):
+            found += [abs(part).mid() for part in (slope.real, slope.imag) if not part.is_zero()]
+    return found
+
+
+def _fixed(samples: Samples) -> list[Point]:
+    return [{k: enclose_written(v, {}) for k, v in sample.items()} for sample in samples]
+
+
+def _start(
+    variables: Sequence[str], between: Between, fixed: Sequence[Point]
+) -> tuple[Point, list[str]]:
+    """A first point, and the variables that no samples fix."""
+    sample = fixed[0] if fixed else {}
+    free = [v for v in variables if v not in sample]
+    return {**{v: acb(_low(between, v) + 1) for v in free}, **sample}, free
 
 
 def _real(value: Fraction) -> arb:
@@ -83,7 +106,7 @@ def _range(
     """The smallest and the largest step from the lower end."""
     rates: list[tuple[arb, Fraction]] = []
     for tree in trees:
-        rates += _rates(tree, variable, names, start)
+        rates += [(abs(s).mid(), doubt) for s, doubt in _slopes(tree, variable, names, start)]
     lowest, highest = arb(0.25), arb(3)
     if rates:
         fastest = max((rate for rate, _ in rates), key=lambda r: r.mid())
@@ -101,9 +124,9 @@ def _range(
     return lowest.mid(), highest.mid()
 
 
-def _rates(
+def _slopes(
     tree: Written, variable: str, names: Quantities, start: Point
-) -> Iterator[tuple[arb, Fraction]]:
+) -> Iterator[tuple[acb, Fraction]]:
     """Yield how fast each exponent and angle grows, and the doubt that its digits leave."""
     ends: list[dict[str, arb | acb | list[list[acb]]]] = []
     for node in walk(tree):
@@ -118,9 +141,9 @@ def _rates(
             later = {**start, variable: start[variable] + 1}
             ends = [names.environment(point) for point in (start, later)]
         first, second = (enclose_written(argument, environment) for environment in ends)
-        rate = abs(second - first)
-        if rate.is_finite() and rate > 0:
-            yield rate.mid(), _doubt(argument)
+        slope = second - first
+        if slope.is_finite() and abs(slope) > 0:
+            yield slope, _doubt(argument)
 
 
 def _doubt(argument: Written) -> Fraction:

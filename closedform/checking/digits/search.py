@@ -7,14 +7,15 @@ from dataclasses import dataclass
 from fractions import Fraction
 from itertools import combinations, islice
 
-from flint import arb, ctx
+from flint import acb, arb, ctx
 
 from closedform.algebra.enclosure import ball_of
 from closedform.checking.balls import Quantities
 from closedform.checking.digits.equations import Equations, compared
-from closedform.checking.digits.instants import Between, Samples, points
+from closedform.checking.digits.instants import Between, Samples, exact_rates, points
 from closedform.checking.digits.newton import CERTAIN_BITS, certified, determined, refined
 from closedform.checking.digits.rounding import Judged, judged
+from closedform.checking.digits.slopes import Plan
 from closedform.checking.digits.unknowns import (
     Unknown,
     apart,
@@ -30,6 +31,7 @@ _BITS = (256, 768)
 _MORE_POINTS = 4
 _MOST_CHOICES, _MOST_TRIED = 60, 12
 _WIDER_TIES = (Fraction(1, 50), Fraction(1, 3))
+_NEAR_SHARE = 20
 _ROUNDING_PLACES = 300
 _ROUNDING_AT_LEAST = 3
 _ROUNDING_SHARE = 50
@@ -62,7 +64,8 @@ def found_numbers(
             places = points(
                 trees, setting.variables, names, count, setting.between, setting.samples
             )
-            search = _Search(unknowns, Equations((), compared(formula, true, names, places)), pair)
+            rates = exact_rates(true, setting.variables, names, setting.between, setting.samples)
+            search = _Search(unknowns, compared(formula, true, names, places), rates, pair)
             found = search.as_printed()
             if found is not None:
                 return found
@@ -114,9 +117,17 @@ def _fault(found: tuple[Judged, ...]) -> tuple[int, int]:
 class _Search:
     """One formula at one precision; `is_unproved` once a solution could not be certified."""
 
-    def __init__(self, unknowns: Sequence[Unknown], system: Equations, pair: int) -> None:
+    def __init__(
+        self,
+        unknowns: Sequence[Unknown],
+        values: tuple[tuple[Plan, acb], ...],
+        rates: Sequence[arb],
+        pair: int,
+    ) -> None:
+        self._unknowns = unknowns
         self._literals = [unknown.literal for unknown in unknowns]
-        self._pairs = system.pairs
+        self._pairs = values
+        self._rates = rates
         self._pair = pair
         self.is_unproved = False
 
@@ -135,7 +146,10 @@ class _Search:
         printed = [ball_of(literal.value).mid() for literal in finest]
         scale = [ball_of(literal.last_place) for literal in finest]
         everything = range(len(groups))
-        solution = refined(system, printed, scale, everything)
+        nearer = [self._nearer(group, value) for group, value in zip(groups, printed, strict=True)]
+        solution = refined(system, nearer, scale, everything)
+        if solution is None and nearer != printed:
+            solution = refined(system, printed, scale, everything)
         if solution is None:
             return None
         best: tuple[Judged, ...] | None = None
@@ -153,6 +167,16 @@ class _Search:
             if best is not None and _fault(best) == (0, 0):
                 break
         return best
+
+    def _nearer(self, group: tuple[int, ...], printed: arb) -> arb:
+        """The rate of the true formula that a printed rate is near to, to begin with.
+
+        Two modes with nearly the same rate leave least squares a valley too flat to follow.
+        """
+        if len(self._unknowns[group[0]].role) < 2 or not self._rates:
+            return printed
+        nearest = min(self._rates, key=lambda rate: arb(abs(rate - printed)))
+        return nearest if abs(nearest - printed) * _NEAR_SHARE < printed else printed
 
     def _judged(self, system: Equations, balls: Sequence[arb]) -> tuple[Judged, ...]:
         found = {

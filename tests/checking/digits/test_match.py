@@ -58,6 +58,10 @@ def matched(claimed: str, true: str, *variables: str, approximate: bool = False)
         ("0.39*2.56*exp(-t)", "0.3949*2.5551*exp(-t)"),
         ("1.41*exp(-2.0*t)+1.41*exp(-2.0*t)", "sqrt(8)*exp(-2*t)"),
         ("0.0*exp(-2.0*t)", "t-t"),
+        (
+            "2.07*exp(-3.74*t)-5.69*exp(-3.44*t)+1.44*exp(-3.45*t)",
+            "sqrt(154)/6*exp(-sqrt(14)*t)-sqrt(291)/3*exp(-sqrt(189)/4*t)+sqrt(132)/8*exp(-sqrt(107)/3*t)",
+        ),
         ("2.0-1.0*exp(-3.0e-3*t)", "2-exp(-3*t/1000)"),
         ("4.9*t**2+0.33", "49/10*t**2+1/3"),
     ],
