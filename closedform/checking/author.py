@@ -39,7 +39,8 @@ class Author:
     """The claims of a derivation in order, as far as they were judged.
 
     `definitions` are names that lines gave to numbers or matrices, with what they stand for;
-    `definition_roots` are the lines on which those rest that are wrong, `right_values` what these ought to be.
+    `definition_roots` are the lines on which those rest that are wrong, `right_values` what
+    these ought to be.  Names in `kept` have the meaning that the model gives them.
     """
 
     entries: tuple[Entry, ...] = ()

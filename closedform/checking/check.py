@@ -182,5 +182,3 @@ def _ambiguities(line: _Line) -> tuple[str, ...]:
         + (f", as {found.decided_by} is declared" if found.decided_by else "")
         for found in reading.ambiguities
     )
-
-

@@ -8,8 +8,9 @@ from dataclasses import field as dataclass_field
 from fractions import Fraction
 
 from closedform.algebra.elementary import Element, ElementaryField, NotElementaryError
-from closedform.checking.errors import NotJudgedError, SizeError, UnknownNameError
-from closedform.checking.matrices import ExactMatrix, diagonal, identity
+from closedform.checking.blocks import block_diagonal, block_matrix
+from closedform.checking.errors import NotJudgedError, UnknownNameError
+from closedform.checking.matrices import ExactMatrix, identity
 from closedform.notation.written.tree import (
     EULER,
     Apply,
@@ -33,10 +34,9 @@ from closedform.notation.written.tree import (
     Symbol,
     Transform,
     Written,
-    changed,
 )
 
-__all__ = ["HELD", "Scope", "Value", "applies", "both_signs", "exact"]
+__all__ = ["HELD", "Scope", "Value", "applies", "exact"]
 
 Value = Element | ExactMatrix
 HELD = "held time"
@@ -67,25 +67,6 @@ class Scope:
         return replace(self, symbols={**self.symbols, **more})
 
 
-def both_signs(node: Written) -> tuple[Written, ...]:
-    """Return the two readings of a formula with plus-or-minus, the upper one first; else itself."""
-    found = False
-
-    def put(*, upper: bool) -> Callable[[Written], Written | None]:
-        def change(part: Written) -> Written | None:
-            nonlocal found
-            if not isinstance(part, PlusMinus):
-                return None
-            found = True
-            inside = changed(part.operand, change)
-            return inside if (part.upper == 1) == upper else Negation(inside)
-
-        return change
-
-    first = changed(node, put(upper=True))
-    return (first, changed(node, put(upper=False))) if found else (node,)
-
-
 def exact(node: Written, scope: Scope) -> Value:
     """Return the exact value of a formula.
 
@@ -96,12 +77,8 @@ def exact(node: Written, scope: Scope) -> Value:
     match node:
         case Literal(value):
             return scope.field.number(value)
-        case Constant():
-            return _constant(node, scope)
         case Symbol(name):
             return _symbol(name, scope)
-        case Jet():
-            return _jet(node, scope)
         case Negation(operand):
             return -exact(operand, scope)
         case Sum(terms):
@@ -114,8 +91,17 @@ def exact(node: Written, scope: Scope) -> Value:
             return _power(node, scope)
         case Apply():
             return _apply(node, scope)
+    return _other(node, scope)
+
+
+def _other(node: Written, scope: Scope) -> Value:
+    match node:
+        case Constant():
+            return _constant(node, scope)
+        case Jet():
+            return _jet(node, scope)
         case Array(rows):
-            return _blocks([[exact(entry, scope) for entry in row] for row in rows], scope)
+            return block_matrix([[exact(e, scope) for e in row] for row in rows], scope.field)
         case Identity(size):
             if size is None and scope.size is None:
                 raise NotJudgedError("the size of the unit matrix is not known")
@@ -272,7 +258,7 @@ def _exponential(exponent: Value, scope: Scope) -> Value:
 def _apply(node: Apply, scope: Scope) -> Value:
     name, values = node.function, [exact(argument, scope) for argument in node.arguments]
     if name == "diag":
-        return _block_diagonal(values, scope)
+        return block_diagonal(values, scope.field)
     value = values[0]
     if isinstance(value, ExactMatrix):
         return _of_matrix(name, value, scope)
@@ -410,48 +396,3 @@ def _integral(body: Written, variable: str, lower: Written, upper: Written, scop
             raise NotJudgedError("a bound of an integral is a number, not a matrix")
         ends.append(antiderivative.at(at).substituted({HELD: field_.t}))
     return ends[0] - ends[1]
-
-
-def _block_diagonal(values: list[Value], scope: Scope) -> ExactMatrix:
-    blocks = [v if isinstance(v, ExactMatrix) else diagonal(scope.field, [v]) for v in values]
-    width = sum(block.shape[1] for block in blocks)
-    rows, before = [], 0
-    zero = scope.field.zero
-    for block in blocks:
-        after = width - before - block.shape[1]
-        rows += [(zero,) * before + row + (zero,) * after for row in block.rows]
-        before += block.shape[1]
-    return ExactMatrix(scope.field, tuple(rows))
-
-
-def _blocks(rows: list[list[Value]], scope: Scope) -> ExactMatrix:
-    """Return a matrix whose entries may be blocks; a number 0 beside a block is a zero block."""
-    if len({len(row) for row in rows}) != 1:
-        raise NotJudgedError("the rows of a matrix have different lengths")
-    if not any(isinstance(entry, ExactMatrix) for row in rows for entry in row):
-        return ExactMatrix(
-            scope.field, tuple(tuple(e for e in row if isinstance(e, Element)) for row in rows)
-        )
-    heights = [max(_extent(entry, 0) for entry in row) for row in rows]
-    widths = [max(_extent(row[j], 1) for row in rows) for j in range(len(rows[0]))]
-    whole: list[tuple[Element, ...]] = []
-    for row, height in zip(rows, heights, strict=True):
-        blocks = [_block(e, height, width, scope) for e, width in zip(row, widths, strict=True)]
-        whole += [tuple(e for block in blocks for e in block.rows[i]) for i in range(height)]
-    return ExactMatrix(scope.field, tuple(whole))
-
-
-def _extent(value: Value, axis: int) -> int:
-    return value.shape[axis] if isinstance(value, ExactMatrix) else 1
-
-
-def _block(value: Value, height: int, width: int, scope: Scope) -> ExactMatrix:
-    if isinstance(value, Element):
-        if (height, width) == (1, 1):
-            return diagonal(scope.field, [value])
-        if not value.is_zero:
-            raise NotJudgedError("a number stands where a block of a matrix is wanted")
-        return ExactMatrix(scope.field, ((scope.field.zero,) * width,) * height)
-    if value.shape != (height, width):
-        raise SizeError("blocks", value.shape, (height, width))
-    return value

@@ -12,7 +12,6 @@ from closedform.checking.claim import Claim, Group
 from closedform.checking.compare import has_decimals
 from closedform.checking.consequences import carried_from
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import both_signs
 from closedform.checking.judge_functions import (
     judge_block_exponential,
     judge_equation,
@@ -43,6 +42,7 @@ from closedform.checking.judge_vectors import (
 )
 from closedform.checking.left_sides import base_and_indices
 from closedform.checking.setting import Finding, Setting
+from closedform.checking.signs import both_signs
 from closedform.notation.written.tree import Symbol, Written
 
 __all__ = ["Judgement", "judge", "judged", "stated"]

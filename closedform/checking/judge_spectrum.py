@@ -13,12 +13,13 @@ from closedform.checking.author import Entry
 from closedform.checking.claim import Claim, Group
 from closedform.checking.compare import Comparison, compare
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import Scope, both_signs, exact
+from closedform.checking.exact import Scope, exact
 from closedform.checking.ground import SPECTRAL, Ground
 from closedform.checking.judging import held_against
 from closedform.checking.left_sides import base_and_indices
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Finding, Setting
+from closedform.checking.signs import both_signs
 from closedform.checking.written_back import written_back
 from closedform.notation.written.tree import Jet, Listing, Symbol, Written, walk
 

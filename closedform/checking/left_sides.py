@@ -103,19 +103,12 @@ def base_and_indices(name: str) -> tuple[str, str]:
 def left_of(node: Written, facts: Facts) -> Left | None:
     """Return what a member of a chain names, or None if it names nothing that is known."""
     match node:
-        case Apply("det", (inside,)) | Apply("abs", (inside,)):
-            sign = _characteristic_sign(inside)
-            return Left("characteristic polynomial", sign=sign) if sign else None
         case Limit(Jet() as jet, variable, point) if variable == facts.time and point == INFINITY:
             return Left("steady state", facts.spelled(jet))
         case Limit(Symbol(name), _, point) if point == INFINITY:
             return Left("steady state", name)
         case Transform(Jet(name, order), back=False):
             return Left("transform", spelled_jet(name, order))
-        case Apply("inverse", (Symbol(name),)) if name in DIAGONALISERS:
-            return Left("P inverse", name)
-        case Power(Symbol(name), Negation(Literal(value=one))) if one == 1:
-            return Left("P inverse", name) if name in DIAGONALISERS else None
         case Evaluated(Jet(name, order, None), variable, at) if variable == facts.time:
             return _of_jet(Jet(name, order, at), facts)
         case Jet():
@@ -124,12 +117,29 @@ def left_of(node: Written, facts: Facts) -> Left | None:
             return _of_symbol(node, facts)
         case Product(factors):
             return _of_product(factors, facts)
+        case Power() | Apply():
+            return _of_function(node, facts)
+    return None
+
+
+def _of_function(node: Power | Apply, facts: Facts) -> Left | None:
+    """Return what e^(At), A^-1, det A and their like name."""
+    match node:
+        case Apply("trace", (Symbol("A"),)):
+            return Left("trace")
+        case Apply("det", (Symbol("A"),)):
+            return Left("determinant")
+        case Apply("det" | "abs", (inside,)):
+            sign = _characteristic_sign(inside)
+            return Left("characteristic polynomial", sign=sign) if sign else None
+        case Apply("inverse", (Symbol(name),)) if name in DIAGONALISERS:
+            return Left("P inverse", name)
+        case Power(Symbol(name), Negation(Literal(value=one))) if one == 1:
+            return Left("P inverse", name) if name in DIAGONALISERS else None
         case Power(base, exponent) if base == EULER:
             return _of_exponential(exponent, facts)
         case Apply("exp", (exponent,)):
             return _of_exponential(exponent, facts)
-        case Apply(("trace" | "det") as which, (Symbol("A"),)):
-            return Left("trace" if which == "trace" else "determinant")
     return None
 
 

@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
 from fractions import Fraction
 
 from closedform.algebra.elementary import Element
 from closedform.algebra.elementary.constant import Constant
-from closedform.algebra.elementary.tower import roots_in
+from closedform.algebra.elementary.tower import Tower, roots_in
 from closedform.algebra.fraction_field import Whole
 from closedform.checking.exact import Value
 from closedform.checking.matrices import ExactMatrix
@@ -47,25 +48,24 @@ def written_back(value: Value, names: Names | None = None, time: str = "t") -> W
 
 def _function(value: Element, names: Names, time: str) -> Written:
     if value.below is not None:
-        field = value.field
-        above, below = Element(field, value.above), Element(field, value.below)
+        above, below = value.like(value.above, None), value.like(value.below, None)
         return Quotient(_function(above, names, time), _function(below, names, time))
     terms = _joined(value)
     return _sum(_term(term, names, time) for term in terms)
 
 
-Term = tuple[Element, Element, int, Element, str]
-"""rate, offset, power of t, coefficient, and "" or the function cos, sin of the frequency."""
+Term = tuple[Element, Element, int, Element, Element | None, str]
+"""Rate, offset, power of t, coefficient, and the frequency with cos or sin, if it is a wave."""
 
 
-def _joined(value: Element) -> list[tuple[Element, Element, int, Element, Element | None, str]]:
+def _joined(value: Element) -> list[Term]:
     """Return the terms, conjugate pairs as cosines and sines.
 
     Each is (rate, offset, power, coefficient, frequency, function).
     """
     field = value.field
     terms = list(value.terms())
-    found: list[tuple[Element, Element, int, Element, Element | None, str]] = []
+    found: list[Term] = []
     used: set[int] = set()
     for k, (rate, offset, power, coefficient) in enumerate(terms):
         if k in used:
@@ -81,24 +81,26 @@ def _joined(value: Element) -> list[tuple[Element, Element, int, Element, Elemen
             found.append((rate, offset, power, coefficient, None, ""))
             continue
         used.add(partner)
-        if frequency.sign() == -1:
-            frequency, coefficient = -frequency, field.conj(coefficient)
-        phase = field.im(offset)
-        if not phase.is_zero:
-            coefficient = coefficient * field.exp(field.i * phase)
-            offset = field.re(offset)
-        for part, function in (
-            (2 * field.re(coefficient), "cos"),
-            (-2 * field.im(coefficient), "sin"),
-        ):
-            if not part.is_zero:
-                found.append((field.re(rate), offset, power, part, frequency, function))
+        found += _waves(rate, offset, power, coefficient)
     return found
 
 
-def _term(
-    term: tuple[Element, Element, int, Element, Element | None, str], names: Names, time: str
-) -> Written:
+def _waves(rate: Element, offset: Element, power: int, coefficient: Element) -> list[Term]:
+    """Return a term and its conjugate as a cosine and a sine."""
+    field = rate.field
+    turned = coefficient * field.exp(field.i * field.im(offset))
+    frequency = field.im(rate)
+    if frequency.sign() == -1:
+        frequency, turned = -frequency, field.conj(turned)
+    parts = ((2 * field.re(turned), "cos"), (-2 * field.im(turned), "sin"))
+    return [
+        (field.re(rate), field.re(offset), power, part, frequency, function)
+        for part, function in parts
+        if not part.is_zero
+    ]
+
+
+def _term(term: Term, names: Names, time: str) -> Written:
     rate, offset, power, coefficient, frequency, function = term
     t = Symbol(time)
     factors: list[Written] = []
@@ -118,73 +120,70 @@ def _constant(value: Element, names: Names) -> Written:
     constant = value.constant
     if constant is None:  # a constant with exponentials of numbers
         return _function(value, names, "t")
-    return _of_tower(constant, names)
+    return _Writer(value.context.tower, names).constant(constant)
 
 
-def _of_tower(constant: Constant, names: Names) -> Written:
-    if not constant.parts:
-        return ZERO
-    whole = constant.as_fraction()
-    if whole is not None:
-        return _fraction(whole)
-    flat = int(constant.below.leading_coefficient()) if _is_number(constant.below) else None
-    terms = []
-    for mask, polynomial in sorted(constant.parts.items()):
-        roots = [_root(constant, k, names) for k in roots_in(mask)]
-        if flat is not None:
-            terms += [
-                _times(_fraction(Fraction(weight, flat)), *monomial, *roots)
-                for weight, monomial in _monomials(constant, polynomial, names)
-            ]
-        else:
-            inside = _sum(
-                _times(_fraction(Fraction(weight)), *monomial)
-                for weight, monomial in _monomials(constant, polynomial, names)
-            )
-            terms.append(_times(inside, *roots))
-    if flat is not None:
-        return _sum(terms)
-    below = _sum(
-        _times(_fraction(Fraction(weight)), *monomial)
-        for weight, monomial in _monomials(constant, constant.below, names)
-    )
-    above = _sum(terms)
-    if isinstance(above, Negation):
-        return Negation(Quotient(above.operand, below))
-    return Quotient(above, below)
+@dataclass(frozen=True, slots=True)
+class _Writer:
+    """Writes constants of a tower."""
+
+    tower: Tower
+    names: Names
+
+    def constant(self, constant: Constant) -> Written:
+        """Return a constant as a formula: a sum, or a quotient of sums."""
+        if not constant.parts:
+            return ZERO
+        whole = constant.as_fraction()
+        if whole is not None:
+            return _fraction(whole)
+        number = _is_number(constant.below)
+        flat = int(constant.below.leading_coefficient()) if number else 1
+        terms = []
+        for mask, polynomial in sorted(constant.parts.items()):
+            roots = [self._root(k) for k in roots_in(mask)]
+            if number:
+                terms += [_times(term, *roots) for term in self._terms(polynomial, flat)]
+            else:
+                terms.append(_times(_sum(self._terms(polynomial)), *roots))
+        above = _sum(terms)
+        if number:
+            return above
+        below = _sum(self._terms(constant.below))
+        if isinstance(above, Negation):
+            return Negation(Quotient(above.operand, below))
+        return Quotient(above, below)
+
+    def _terms(self, polynomial: Whole, divisor: int = 1) -> list[Written]:
+        """Return the terms of a polynomial over a number."""
+        terms = []
+        for exponents, weight in polynomial.to_dict().items():
+            factors: list[Written] = []
+            for k, exponent in enumerate(exponents):
+                if exponent:
+                    base = self._generator(k)
+                    power = Literal(Fraction(int(exponent)))
+                    factors.append(base if exponent == 1 else Power(base, power))
+            terms.append(_times(_fraction(Fraction(int(weight), divisor)), *factors))
+        return terms
+
+    def _generator(self, k: int) -> Written:
+        generator = self.tower.generators[k]
+        match generator.kind:
+            case "pi":
+                return PI
+            case "ln" | "atan" if generator.of is not None:
+                return Apply(generator.kind, (self.constant(generator.of),))
+        return Symbol(self.names.get(generator.text, generator.text))
+
+    def _root(self, k: int) -> Written:
+        if k == 0:
+            return IMAGINARY
+        return Apply("sqrt", (self.constant(self.tower.roots[k].radicand),))
 
 
 def _is_number(polynomial: Whole) -> bool:
     return all(degree <= 0 for degree in polynomial.degrees())
-
-
-def _monomials(
-    constant: Constant, polynomial: Whole, names: Names
-) -> Iterable[tuple[int, list[Written]]]:
-    for exponents, weight in polynomial.to_dict().items():
-        factors: list[Written] = []
-        for k, exponent in enumerate(exponents):
-            if exponent:
-                base = _generator(constant, k, names)
-                power = Literal(Fraction(int(exponent)))
-                factors.append(base if exponent == 1 else Power(base, power))
-        yield int(weight), factors
-
-
-def _generator(constant: Constant, k: int, names: Names) -> Written:
-    generator = constant.tower.generators[k]
-    match generator.kind:
-        case "pi":
-            return PI
-        case "ln" | "atan" if generator.of is not None:
-            return Apply(generator.kind, (_of_tower(generator.of, names),))
-    return Symbol(names.get(generator.text, generator.text))
-
-
-def _root(constant: Constant, k: int, names: Names) -> Written:
-    if k == 0:
-        return IMAGINARY
-    return Apply("sqrt", (_of_tower(constant.tower.roots[k].radicand, names),))
 
 
 def _fraction(value: Fraction) -> Written:
