@@ -18,6 +18,7 @@ from closedform.algebra.elementary.errors import NotElementaryError
 from closedform.algebra.elementary.radicals import Radicals
 from closedform.algebra.elementary.signs import Signs
 from closedform.algebra.elementary.tower import Generator, Tower
+from closedform.algebra.elementary.turns import parted, turned
 from closedform.algebra.fraction_field import Whole
 
 __all__ = ["Angles"]
@@ -166,7 +167,7 @@ class Angles:
         for denominator in (24, 20):
             k = (share * denominator).unique_fmpz()
             if k is not None:
-                turn = self.turned(Fraction(int(k), denominator))
+                turn = turned(self._radicals, Fraction(int(k), denominator))
                 if turn.imaginary == u * turn.real:
                     return tower.pi * tower.number(Fraction(int(k), denominator))
         return None
@@ -223,8 +224,8 @@ class Angles:
     ) -> tuple[Fraction, Constant]:
         """The part of a coefficient that can be taken out, and exp of the generator times it."""
         if generator.of is None:
-            return coefficient, self.turned(coefficient)
-        dyadic, _ = _parted(coefficient)
+            return coefficient, turned(self._radicals, coefficient)
+        dyadic, _ = parted(coefficient)
         if dyadic.denominator > 16:
             raise NotElementaryError(f"a root of degree {dyadic.denominator}")
         base = self._direction_of(index, generator.of) if i_times else generator.of
@@ -264,50 +265,6 @@ class Angles:
     def _is_number(self, index: int) -> bool:
         generators = self._tower.generators
         return index < len(generators) and generators[index].kind != "name"
-
-    def turned(self, share: Fraction) -> Constant:
-        """Return exp(i pi share) for a denominator 2^a, 3 · 2^a, 5 · 2^a or 15 · 2^a, a <= 4.
-
-        Raises NotElementaryError for others.
-        """
-        tower = self._tower
-        share %= 2
-        below = share.denominator
-        dyadic, odd = _parted(share)
-        if odd.denominator not in (1, 3, 5, 15) or dyadic.denominator > 16:
-            raise NotElementaryError(f"the cosine of pi/{below} is no expression in square roots")
-        result, depth = -tower.one, dyadic.denominator
-        while depth > 1:
-            result, depth = self._radicals.root(result), depth // 2
-        result = result**dyadic.numerator
-        if odd:  # odd = x/3 + y/5, and whole numbers
-            over = odd * 15
-            x, y = int(over) * 2 % 3, int(over) * 2 % 5
-            whole = odd - Fraction(x, 3) - Fraction(y, 5)
-            result = result * self._third() ** x * self._fifth() ** y
-            result = result * (-tower.one if whole % 2 else tower.one)
-        return result
-
-    def _third(self) -> Constant:
-        tower = self._tower
-        root = self._radicals.root(tower.number(3))
-        return (tower.one + tower.i * root) * tower.number(Fraction(1, 2))
-
-    def _fifth(self) -> Constant:
-        tower = self._tower
-        root = self._radicals.root(tower.number(5))
-        cosine = (tower.one + root) * tower.number(Fraction(1, 4))
-        return cosine + tower.i * self._radicals.root(tower.one - cosine * cosine)
-
-
-def _parted(value: Fraction) -> tuple[Fraction, Fraction]:
-    """A sum of two: a power of 2 is below, and an odd number below what lies in [0, 1)."""
-    odd = value.denominator
-    even = odd & -odd
-    odd //= even
-    above = value.numerator * pow(even, -1, odd) % odd if odd > 1 else 0
-    rest = Fraction(above, odd)
-    return value - rest, rest
 
 
 def _two_squares(prime: int) -> tuple[int, int]:

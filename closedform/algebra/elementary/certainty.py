@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from fractions import Fraction
+from itertools import product
 
 from flint import acb, arb, ctx, fmpq
 
@@ -16,7 +17,7 @@ from closedform.algebra.elementary.tower import roots_in
 __all__ = ["demand_nonzero", "enclosure", "limit", "sign"]
 
 MOST_BITS = 2048
-INSTANT = Fraction(5, 7)
+INSTANTS = Fraction(5, 7), Fraction(13, 11)
 
 
 def enclosure(context: Context, terms: Terms, names: Mapping[str, arb], time: acb) -> acb:
@@ -47,13 +48,11 @@ def demand_nonzero(context: Context, terms: Terms) -> None:
     if not terms or not _doubtful(context, terms):
         return
     for values in _points(context, terms):
-        bits = 64
-        while bits <= MOST_BITS:
+        for bits, instant in product((64, 256, MOST_BITS), INSTANTS):
             with ctx.workprec(bits):
                 names = {n: _arb(v) for n, v in values.items()}
-                if not enclosure(context, terms, names, acb(_arb(INSTANT))).contains(0):
+                if not enclosure(context, terms, names, acb(_arb(instant))).contains(0):
                     return
-            bits *= 4
     raise NotElementaryError("two numbers agree to many digits and are not known to be equal")
 
 

@@ -14,6 +14,7 @@ from flint import fmpz
 
 from closedform.algebra.elementary.constant import Constant
 from closedform.algebra.elementary.errors import NotElementaryError
+from closedform.algebra.elementary.residues import Residues
 from closedform.algebra.elementary.signs import Signs
 from closedform.algebra.elementary.squares import square_root
 from closedform.algebra.elementary.tower import Tower, roots_in
@@ -29,9 +30,10 @@ class Radicals:
     """The square roots of the constants of a tower."""
 
     def __init__(self, tower: Tower, signs: Signs) -> None:
-        self._tower, self._signs = tower, signs
+        self.tower, self._signs = tower, signs
         self._known: dict[Constant, Constant] = {}
         self._all_atoms = True
+        self._residues = Residues(tower)
 
     def root(self, element: Constant) -> Constant:
         """Return the principal square root.
@@ -53,7 +55,7 @@ class Radicals:
 
     def demand_settled(self, element: Constant) -> None:
         """Raise NotElementaryError if an element may be complex without showing it by i."""
-        if not all(k == 0 or self._tower.roots[k].positive for k in roots_in(element.mask())):
+        if not all(k == 0 or self.tower.roots[k].positive for k in roots_in(element.mask())):
             raise NotElementaryError("a square root is real or not, as the parameters are")
 
     def _turned(self, real: Constant) -> Constant:
@@ -61,10 +63,10 @@ class Radicals:
         sign = self._signs.of(real)
         if sign is None:
             raise NotElementaryError("the sign of a quantity under a root is not known")
-        return real if sign > 0 else -real if sign else self._tower.zero
+        return real if sign > 0 else -real if sign else self.tower.zero
 
     def _root(self, x: Constant) -> Constant:
-        tower = self._tower
+        tower = self.tower
         if not x:
             return x
         real, imaginary = x.real, x.imaginary
@@ -84,11 +86,14 @@ class Radicals:
         """The root of an element that is positive."""
         if x.is_flat:
             return self._flat(x, positive=True)
-        found = square_root(self._tower, x)
+        found = self._in_tower(x)
         if found is not None:
             return self._turned(found)
         outer, inner, scale = self._primitive(x)
         return scale * self._flat(outer, positive=True) * self._known_or_new(inner, positive=True)
+
+    def _in_tower(self, x: Constant) -> Constant | None:
+        return None if self._residues.excludes(x) else square_root(self.tower, x)
 
     def _unsettled(self, x: Constant) -> Constant:
         """The root of an element with roots in it whose sign is not known."""
@@ -97,7 +102,7 @@ class Radicals:
 
     def _primitive(self, x: Constant) -> tuple[Constant, Constant, Constant]:
         """u, v, w with sqrt(x) = w sqrt(u) sqrt(v): u > 0 flat, v without denominator."""
-        tower = self._tower
+        tower = self.tower
         shared = next(iter(x.parts.values()))
         for part in x.parts.values():
             shared = shared.gcd(part)
@@ -110,7 +115,7 @@ class Radicals:
 
     def _flat(self, x: Constant, *, positive: bool = False) -> Constant:
         """The root of an element of Q(names); `positive` says that it is known to be so."""
-        tower = self._tower
+        tower = self.tower
         content, factors = self._factored(x)
         outside, rest, sign = tower.one, tower.unit, 1 if content > 0 else -1
         for factor, exponent in factors:
@@ -143,21 +148,21 @@ class Radicals:
         whole, outside = value.numerator * value.denominator, Fraction(1, value.denominator)
         root = fmpz(whole).isqrt()
         if root * root == whole:
-            return self._tower.number(outside * int(root))
+            return self.tower.number(outside * int(root))
         if whole >= 10**MOST_DIGITS:
             raise NotElementaryError(
                 f"the square root of a number of more than {MOST_DIGITS} digits"
             )
-        result = self._tower.one
+        result = self.tower.one
         for prime, exponent in fmpz(whole).factor():
             outside *= int(prime) ** (int(exponent) // 2)
             if exponent % 2:
-                result = result * self._atom(self._tower.ring.constant(int(prime)))
-        return result * self._tower.number(outside)
+                result = result * self._atom(self.tower.ring.constant(int(prime)))
+        return result * self.tower.number(outside)
 
     def _atom(self, polynomial: Whole) -> Constant:
         """The root of a prime or irreducible polynomial that is positive."""
-        return self._known_or_new(self._tower.polynomial(polynomial), positive=True, atom=True)
+        return self._known_or_new(self.tower.polynomial(polynomial), positive=True, atom=True)
 
     def _known_or_new(self, x: Constant, *, positive: bool, atom: bool = False) -> Constant:
         if x not in self._known:
@@ -167,7 +172,7 @@ class Radicals:
     def _new(self, x: Constant, *, positive: bool, atom: bool) -> Constant:
         """The root of an element without denominator, found in the tower or adjoined to it."""
         # Roots of distinct primes and irreducible polynomials are independent of each other.
-        found = None if atom and self._all_atoms else square_root(self._tower, x)
+        found = None if atom and self._all_atoms else self._in_tower(x)
         if found is not None:
             if not positive:
                 raise NotElementaryError(
@@ -175,4 +180,4 @@ class Radicals:
                 )
             return self._turned(found)
         self._all_atoms = self._all_atoms and atom
-        return self._tower.adjoined(x, positive=positive)
+        return self.tower.adjoined(x, positive=positive)
