@@ -10,7 +10,7 @@ from rich.cells import cell_len, chop_cells
 
 from closedform.checking.verdict import CheckReport, LineVerdict, Word
 from closedform.cli.screen import Line, printable
-from closedform.document.checked_words import outcome, slip_words, tally
+from closedform.document.checked_words import outcome, sentence, slip_words, tally
 from closedform.notation.written.plain_form import plain_written
 
 __all__ = ["check_line", "check_summary"]
@@ -90,7 +90,7 @@ def _word(verdict: LineVerdict) -> str:
 
 
 def _reason(verdict: LineVerdict, width: int) -> list[str]:
-    texts = [verdict.reason, *(f"Note: {note}" for note in verdict.notes)]
+    texts = [sentence(verdict.reason), *(f"Note: {sentence(note)}" for note in verdict.notes)]
     return [line for text in texts for line in _wrapped(text, width)]
 
 

@@ -11,10 +11,10 @@ from closedform.checking.verdict import CheckReport
 from closedform.document.checked_formulas import formula_of, statement_of, typed
 from closedform.document.checked_words import (
     MEANINGS,
-    capitalised,
     counts,
     outcome,
     place_of,
+    sentence,
     slip_words,
     tally,
 )
@@ -92,7 +92,7 @@ def narrowed(text: str) -> str:
 
 
 def subject(says: str) -> str:
-    r"""Return what a line says as LaTeX, the name behind the kind of claim as a symbol.
+    r"""Return what a line says as LaTeX, names behind the kind of claim as symbols.
 
     >>> subject("solution x1"), subject("P inverse")
     ('solution $x_{1}$', 'P inverse')
@@ -100,9 +100,9 @@ def subject(says: str) -> str:
     if says in KINDS:
         return says
     kind = next((k for k in sorted(KINDS, key=len)[::-1] if says.startswith(f"{k} ")), "")
-    name = says[len(kind) :].strip()
-    if kind and NAME.fullmatch(name):
-        return f"{kind} ${latex_name(name)}$"
+    names = says[len(kind) :].strip().split(", ")
+    if kind and all(map(NAME.fullmatch, names)):
+        return f"{kind} {', '.join(f'${latex_name(name)}$' for name in names)}"
     return prose(says)
 
 
@@ -114,7 +114,7 @@ def _environment(template: str | Path) -> Environment:
         "typed": typed,
         "place_of": place_of,
         "slip_words": slip_words,
-        "sentence": capitalised,
+        "sentence": sentence,
         "prose": prose,
         "narrowed": narrowed,
         "subject": subject,

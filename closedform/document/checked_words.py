@@ -8,11 +8,11 @@ from closedform.checking.verdict import WORDS, CheckReport, LineVerdict, Slip, W
 
 __all__ = [
     "MEANINGS",
-    "capitalised",
     "counts",
     "line_name",
     "outcome",
     "place_of",
+    "sentence",
     "slip_words",
     "tally",
 ]
@@ -32,6 +32,14 @@ MEANINGS: dict[Word, str] = {
     "said about it.",
 }
 """What each verdict says, for a reader who has not met it."""
+
+OPENERS = (
+    "a all an as at both column columns each entries entry every for from half in it its line "
+    "lines neither no none not nothing of on one only row rows several some that the there these "
+    "they this to two what where which with without"
+)
+OPENING_WORDS = frozenset(OPENERS.split())
+"""Words that a remark begins with and that are no names of quantities."""
 
 VERBS: dict[Word, tuple[str, str]] = {
     "holds": ("holds", "hold"),
@@ -91,9 +99,18 @@ def outcome(report: CheckReport) -> str:
     return "; ".join(parts)
 
 
-def capitalised(text: str) -> str:
-    """Return a sentence that begins with a capital and ends with a full stop."""
-    return text if not text else f"{text[0].upper()}{text[1:].rstrip('.')}."
+def sentence(text: str) -> str:
+    """Return a remark as a sentence: with a full stop, and a capital if it begins with a word.
+
+    What may be a name keeps its letters: x1 is not X1.
+
+    >>> sentence("it belongs to x1"), sentence("x1 is no eigenvalue.")
+    ('It belongs to x1.', 'x1 is no eigenvalue.')
+    """
+    words = " ".join(text.split())
+    if words.partition(" ")[0].strip(",;:") in OPENING_WORDS:
+        words = words[0].upper() + words[1:]
+    return words if not words or words.endswith((".", "!", "?")) else f"{words}."
 
 
 def line_name(verdict: LineVerdict) -> str:

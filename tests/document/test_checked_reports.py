@@ -108,6 +108,7 @@ def test_a_minus_is_no_hyphen_and_names_are_symbols() -> None:
     assert prose("cross-check of -1 and x - 2") == r"cross-check of \ensuremath{-}1 and x - 2"
     assert subject("generalized eigenvector v_2") == "generalized eigenvector $v_{2}$"
     assert subject("value x1'") == r"value $\dot{x}_{1}$"
+    assert subject("value x, x_2") == "value $x$, $x_{2}$"
     assert subject("value $x") == r"value \$x"
     assert subject("") == ""
 

@@ -6,7 +6,7 @@ import pytest
 
 from closedform.checking.claim import SourceLine
 from closedform.checking.verdict import WORDS, CheckReport, LineVerdict, Word
-from closedform.document.checked_words import MEANINGS, capitalised, counts, outcome, tally
+from closedform.document.checked_words import MEANINGS, counts, outcome, sentence, tally
 from tests.document.checked_samples import CHECKED_SAMPLES, slipped
 
 
@@ -65,6 +65,18 @@ def test_the_counts_add_up_to_the_lines(name: str) -> None:
     assert sum(found.values()) == len(sample.lines)
 
 
-def test_a_sentence_has_one_full_stop_and_keeps_its_capitals() -> None:
-    assert capitalised("a sign of A.") == "A sign of A."
-    assert capitalised("") == ""
+SENTENCES = [
+    ("", ""),
+    ("a sign of A", "A sign of A."),
+    ("it holds.", "It holds."),
+    ("a", "A."),
+    ("x1 is no state", "x1 is no state."),
+    ("lambda is 2", "lambda is 2."),
+    ("the  line\nends", "The line ends."),
+    ("Is it so?", "Is it so?"),
+]
+
+
+@pytest.mark.parametrize(("remark", "said"), SENTENCES)
+def test_a_remark_becomes_a_sentence_and_names_keep_their_letters(remark: str, said: str) -> None:
+    assert sentence(remark) == said
