@@ -37,7 +37,7 @@ class Facts:
     def vector_names(self) -> frozenset[str]:
         """Names that stand for the column of all states: x, and their common letter."""
         bases = {state.rstrip("'").split("_")[0].rstrip("0123456789") for state in self.states}
-        found = {"x", "xvec", "X", *(bases if len(bases) == 1 else ())}
+        found = {"x", "xvec", *(bases if len(bases) == 1 else ())}
         found |= {f"{name}vec" for name in found}
         return frozenset(found - self.names)
 
@@ -50,7 +50,9 @@ class Facts:
         small = name[:1].lower() + name[1:]
         if name in self.names or small == name:
             return None
-        return small if small in self.varying else None
+        if small in self.varying:
+            return small
+        return "vector" if self.has_vector(small) else None
 
     def spelled(self, jet: Jet) -> str:
         """Return a derivative as it is typed."""

@@ -174,15 +174,15 @@ def _names_identity(node: Written) -> bool:
 
 def _of_jet(jet: Jet, facts: Facts) -> Left | None:
     name = spelled_jet(jet.name, jet.order)
+    if jet.order == 0 and jet.at is not None and _is_spectral(jet.at, facts):
+        whose = facts.transformed(jet.name)
+        return Left("transform", whose) if whose else Left("characteristic polynomial")
     if jet.name in facts.varying or facts.has_vector(jet.name):
         if jet.at is None or jet.at == Symbol(facts.time):
             return Left("output" if name in facts.outputs else "solution", name)
         if jet.at == INFINITY:
             return Left("steady state", name)
         return Left("value", name, jet.at)
-    if jet.order == 0 and jet.at is not None and _is_spectral(jet.at, facts):
-        whose = facts.transformed(jet.name)
-        return Left("transform", whose) if whose else Left("characteristic polynomial")
     if jet.order == 0 and jet.at in (None, Symbol(facts.time)) and jet.name in ("Phi", "phi"):
         return Left("exp A")
     base, index = base_and_indices(jet.name)

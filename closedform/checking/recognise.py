@@ -118,7 +118,8 @@ def _claim(
     approximate = "≈" in statement.relations
     if left is None:
         says, names = _by_shape(statement, facts)
-        values = members[len(names) :]
+        equated = says == "characteristic polynomial" and ends_in_zero
+        values = members[len(names) : -1] if equated else members[len(names) :]
         return Claim(
             line,
             (statement,),

@@ -55,7 +55,7 @@ def _function(value: Element, names: Names, time: str) -> Written:
 
 
 Term = tuple[Element, Element, int, Element, Element | None, str]
-"""Rate, offset, power of t, coefficient, and the frequency with cos or sin, if it is a wave."""
+"""Rate, offset, power of t, coefficient, and the angle with cos or sin, if it is a wave."""
 
 
 def _joined(value: Element) -> list[Term]:
@@ -70,9 +70,8 @@ def _joined(value: Element) -> list[Term]:
     for k, (rate, offset, power, coefficient) in enumerate(terms):
         if k in used:
             continue
-        frequency = field.im(rate)
         partner = None
-        if not frequency.is_zero:
+        if not (field.im(rate).is_zero and field.im(offset).is_zero):
             wanted = (field.conj(rate), field.conj(offset), power, field.conj(coefficient))
             partner = next(
                 (j for j in range(k + 1, len(terms)) if j not in used and terms[j] == wanted), None
@@ -88,20 +87,19 @@ def _joined(value: Element) -> list[Term]:
 def _waves(rate: Element, offset: Element, power: int, coefficient: Element) -> list[Term]:
     """Return a term and its conjugate as a cosine and a sine."""
     field = rate.field
-    turned = coefficient * field.exp(field.i * field.im(offset))
-    frequency = field.im(rate)
-    if frequency.sign() == -1:
-        frequency, turned = -frequency, field.conj(turned)
-    parts = ((2 * field.re(turned), "cos"), (-2 * field.im(turned), "sin"))
+    frequency, phase = field.im(rate), field.im(offset)
+    if (frequency.sign() or phase.sign()) == -1:
+        frequency, phase, coefficient = -frequency, -phase, field.conj(coefficient)
+    parts = ((2 * field.re(coefficient), "cos"), (-2 * field.im(coefficient), "sin"))
     return [
-        (field.re(rate), field.re(offset), power, part, frequency, function)
+        (field.re(rate), field.re(offset), power, part, frequency * field.t + phase, function)
         for part, function in parts
         if not part.is_zero
     ]
 
 
 def _term(term: Term, names: Names, time: str) -> Written:
-    rate, offset, power, coefficient, frequency, function = term
+    rate, offset, power, coefficient, angle, function = term
     t = Symbol(time)
     factors: list[Written] = []
     if power:
@@ -111,8 +109,8 @@ def _term(term: Term, names: Names, time: str) -> Written:
         exponent.append(_constant(offset, names))
     if exponent:
         factors.append(Power(EULER, _sum(exponent)))
-    if frequency is not None:
-        factors.append(Apply(function, (_times(_constant(frequency, names), t),)))
+    if angle is not None:
+        factors.append(Apply(function, (_function(angle, names, time),)))
     return _times(_constant(coefficient, names), *factors)
 
 

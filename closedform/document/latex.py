@@ -15,6 +15,7 @@ __all__ = [
     "cell",
     "decimal",
     "displayed",
+    "field_latex",
     "fits",
     "inline",
     "mixed",
@@ -27,6 +28,7 @@ NUMBER = r"[0-9]+(?:\.[0-9]+)?(?:[eE][-+]?[0-9]+)?"
 COMPLEX = re.compile(
     rf"(?P<real>([-+\u2212]?{NUMBER})?)\s*(?P<sign>[-+\u2212±]?)\s*(?P<size>{NUMBER})\s*i"
 )
+FIELD = re.compile(r"Q(\(sqrt\([0-9]+\)(, ?sqrt\([0-9]+\))*\))?")
 DECIMAL = re.compile(
     r"(?P<sign>[-+\u2212]?)(?P<whole>[0-9]+)(?P<part>(\.[0-9]+)?)([eE](?P<power>[-+]?[0-9]+))?"
 )
@@ -108,3 +110,11 @@ def split_decimal(text: str) -> tuple[str, str, str]:
     power = rf" \times 10^{{{int(match['power'])}}}" if match["power"] else ""
     sign = "-" if match["sign"] in {"-", "\u2212"} else ""
     return sign, match["whole"], match["part"] + power
+
+
+def field_latex(text: str) -> str:
+    r"""Return a field of numbers as mathematics: Q(sqrt(2)) is \mathbb{Q}(\sqrt{2})."""
+    if FIELD.fullmatch(text) is None:
+        return escaped(text)
+    roots = re.sub(r"sqrt\(([0-9]+)\)", r"\\sqrt{\1}", text[1:])
+    return rf"$\mathbb{{Q}}{roots}$"

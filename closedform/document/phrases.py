@@ -2,12 +2,10 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Callable, Iterable
 from typing import Any
 
 from closedform.derivation.step import Side, Statement, Step, Symbol
-from closedform.document.units import unit_latex
 from closedform.notation.expression import Call, Expression, Name, Power, Product, number
 from closedform.notation.latex.escape import escaped
 
@@ -15,7 +13,6 @@ __all__ = ["FILTERS", "FUNCTIONS", "stacked_symbol"]
 
 NUMBER_WORDS = "no one two three four five six seven eight nine ten eleven twelve"
 WORDS = NUMBER_WORDS.split()
-FIELD = re.compile(r"Q(\(sqrt\([0-9]+\)(, ?sqrt\([0-9]+\))*\))?")
 
 
 def said(step: Step, *says: str) -> list[Statement]:
@@ -24,10 +21,14 @@ def said(step: Step, *says: str) -> list[Statement]:
 
 
 def symbol(
-    kind: str, letter: str = "", *indices: str, argument: Expression | None = None
+    kind: str,
+    letter: str = "",
+    *indices: str,
+    argument: Expression | None = None,
+    order: int = 0,
 ) -> Symbol:
     """Return a symbol of a kind for use in a sentence."""
-    return Symbol(kind, indices, argument, letter)
+    return Symbol(kind, indices, argument, letter, order)
 
 
 STACKED = {
@@ -43,7 +44,11 @@ STACKED = {
 
 
 def stacked_symbol(
-    kind: str, letter: str = "", *indices: str, argument: Expression | None = None
+    kind: str,
+    letter: str = "",
+    *indices: str,
+    argument: Expression | None = None,
+    order: int = 0,
 ) -> Symbol:
     """Return a symbol as `symbol` does, the matrix and the vector of the model in hats.
 
@@ -51,7 +56,7 @@ def stacked_symbol(
     """
     if not letter and kind in STACKED:
         letter = f"{STACKED[kind]}_hat"
-    return symbol(kind, letter, *indices, argument=argument)
+    return symbol(kind, letter, *indices, argument=argument, order=order)
 
 
 def named(item: str | Expression) -> Expression:
@@ -96,14 +101,6 @@ def add_one(value: int) -> int:
     return value + 1
 
 
-def field(text: str) -> str:
-    r"""Return a field of numbers as mathematics: Q(sqrt(2)) is \mathbb{Q}(\sqrt{2})."""
-    if FIELD.fullmatch(text) is None:
-        return escaped(text)
-    roots = re.sub(r"sqrt\(([0-9]+)\)", r"\\sqrt{\1}", text[1:])
-    return rf"$\mathbb{{Q}}{roots}$"
-
-
 def quotient(several: bool) -> Side:  # noqa: FBT001  called from templates only
     """Return r(lambda)/p'(lambda), with an index on p if there are several factors."""
     argument = Name("lambda")
@@ -114,9 +111,7 @@ def quotient(several: bool) -> Side:  # noqa: FBT001  called from templates only
 
 FILTERS: dict[str, Callable[..., Any]] = {
     "text": escaped,
-    "unit": unit_latex,
     "said": said,
-    "field": field,
     "listed": listed,
     "add_one": add_one,
 }

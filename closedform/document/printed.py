@@ -7,13 +7,15 @@ What it noted is read back from the finished text (`closedform.document.reading`
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass
+from dataclasses import field as slot
 
 from closedform.derivation.step import Side, Statement
 from closedform.document.beside import displayed_beside
 from closedform.document.display import Display, displayed, displayed_together
-from closedform.document.latex import cell, decimal, inline, mixed
+from closedform.document.latex import cell, decimal, field_latex, inline, mixed
 from closedform.document.tables import DecimalTable, decimal_tables
+from closedform.document.units import unit_latex
 
 __all__ = ["Printed", "Shown", "ShownTable"]
 
@@ -40,19 +42,21 @@ class Printed:
     """Sets mathematics for templates and notes it.
 
     `displays` and `tables` are in the order of printing; `formulas` maps what stands between
-    dollar signs to its object, `decimals` likewise to the text of the decimal.
+    dollar signs to its object, `decimals` likewise to the text of the decimal.  `words` are
+    units and fields of numbers, which are set as mathematics and say none.
     """
 
-    displays: list[Shown] = field(default_factory=list)
-    tables: list[ShownTable] = field(default_factory=list)
-    formulas: dict[str, Side | Statement | str] = field(default_factory=dict)
-    decimals: dict[str, str] = field(default_factory=dict)
+    displays: list[Shown] = slot(default_factory=list)
+    tables: list[ShownTable] = slot(default_factory=list)
+    formulas: dict[str, Side | Statement | str] = slot(default_factory=dict)
+    decimals: dict[str, str] = slot(default_factory=dict)
+    words: set[str] = slot(default_factory=set)
 
     def clear(self) -> None:
         """Forget everything, before another pass."""
         for kept in (self.displays, self.tables):
             kept.clear()
-        for known in (self.formulas, self.decimals):
+        for known in (self.formulas, self.decimals, self.words):
             known.clear()
 
     def display(self, statement: Statement, label: str, by: str) -> Display:
@@ -105,8 +109,22 @@ class Printed:
 
     def decimal(self, text: str) -> str:
         """Return a decimal as mathematics, as `decimal` does."""
+        if " and " in text:  # two real eigenvalues
+            return " and ".join(map(self.decimal, text.split(" and ")))
         made = decimal(text)
         self.decimals[made] = text
+        return made
+
+    def unit(self, text: str) -> str:
+        """Return a unit as mathematics, as `unit_latex` does."""
+        return self._worded(unit_latex(text))
+
+    def field(self, text: str) -> str:
+        """Return a field of numbers as mathematics, as `field_latex` does."""
+        return self._worded(field_latex(text))
+
+    def _worded(self, made: str) -> str:
+        self.words.add(made)
         return made
 
     def tabled(self, header: Sequence[Side], rows: Sequence[Sequence[str]]) -> list[DecimalTable]:

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from pathlib import Path
 from typing import get_args
 
 from closedform.derivation.step import Depth, Derivation, Symbol
 from closedform.document.phrases import stacked_symbol
+from closedform.document.printed import Printed
 from closedform.document.references import References
 from closedform.document.templating import (
     MAIN,
@@ -20,10 +22,12 @@ from closedform.notation.latex.names import derivatives_of, is_time
 
 __all__ = [
     "DEPTHS",
+    "Rendered",
     "UnknownDepthError",
     "UnusableDigitsError",
     "check_options",
     "render",
+    "rendered",
 ]
 
 DEPTHS: tuple[str, ...] = get_args(Depth)
@@ -65,10 +69,29 @@ def check_options(*, depth: str, digits: int) -> None:
         raise UnusableDigitsError(digits)
 
 
+@dataclass(frozen=True)
+class Rendered:
+    """The text of a document, and each formula in it with the object that it prints.
+
+    `time` is the variable that the functions in it are functions of.
+    """
+
+    text: str
+    printed: Printed
+    time: str
+
+
 def render(
     derivation: Derivation, *, template: str | Path = "latex", depth: str = "working"
 ) -> str:
-    """Return the derivation as the text of a document.
+    """Return the derivation as the text of a document, as `rendered` does."""
+    return rendered(derivation, template=template, depth=depth).text
+
+
+def rendered(
+    derivation: Derivation, *, template: str | Path = "latex", depth: str = "working"
+) -> Rendered:
+    """Return the derivation as the text of a document, with what it prints.
 
     `template` is the name of a shipped template, or a folder whose files take the place
     of the shipped ones of the same name.  The same input gives the same text.
@@ -104,7 +127,8 @@ def render(
         return main.render(values)
 
     with derivatives_of(time.text):
-        return answered(template, twice)
+        text = answered(template, twice)
+    return Rendered(text, references.printed, time.text)
 
 
 def _time(derivation: Derivation) -> Name:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable
 from importlib import resources
 from importlib.resources.abc import Traversable
@@ -23,6 +24,7 @@ __all__ = [
     "answered",
     "check_template",
     "environment",
+    "formulas_of_templates",
     "shortened",
     "templates_folder",
 ]
@@ -30,6 +32,7 @@ __all__ = [
 MAIN = "writeup.tex.j2"
 """The file of a template that a write-up is made by."""
 
+LITERAL_FORMULA = re.compile(r"(?<!\\)\$((?:[^$<>\\]|\\.)+)\$")
 LONGEST_FOOT = 60
 _T = TypeVar("_T")
 
@@ -56,12 +59,12 @@ def templates_folder() -> Traversable:
     return inside if inside.is_dir() else Path(str(package)).parent / "templates"
 
 
-def check_template(template: str | Path, main: str = MAIN) -> None:
-    """Find and read the file `main` of a template, so that a wrong name is told at once.
+def check_template(template: str | Path) -> None:
+    """Find and read the main file of a template, so that a wrong name is told at once.
 
     Raises:  TemplateError if it is not there or not valid.
     """
-    answered(template, lambda: environment(template, References()).get_template(main))
+    answered(template, lambda: environment(template, References()).get_template(MAIN))
 
 
 def answered(template: str | Path, work: Callable[[], _T]) -> _T:
@@ -141,6 +144,8 @@ def environment(template: str | Path, references: References) -> Environment:
         "cell": printed.cell,
         "mixed": printed.mixed,
         "decimal": printed.decimal,
+        "unit": printed.unit,
+        "field": printed.field,
     }
     made.globals |= FUNCTIONS
     made.globals |= {
@@ -156,6 +161,21 @@ def environment(template: str | Path, references: References) -> Environment:
     made.tests["fits"] = fits
     made.tests["narrow"] = narrow
     return made
+
+
+def formulas_of_templates(template: str | Path) -> frozenset[str]:
+    """Return what stands between dollar signs in the files of a template, nothing put in."""
+    folders: list[Traversable] = [templates_folder() / "latex"]
+    if str(template) != "latex":
+        folders.append(Path(template))
+    found: set[str] = set()
+    while folders:
+        for item in folders.pop().iterdir():
+            if item.is_dir():
+                folders.append(item)
+            elif item.name.endswith(".j2"):
+                found |= set(LITERAL_FORMULA.findall(item.read_text(encoding="utf-8")))
+    return frozenset(found)
 
 
 def shortened(title: str) -> str:

@@ -20,9 +20,54 @@ from closedform.notation.written.tree import (
 __all__ = ["GREEK", "STEPS", "Names"]
 
 GREEK = frozenset(
-    "alpha beta gamma delta epsilon varepsilon zeta eta theta vartheta iota kappa varkappa lambda "
-    "mu nu xi omicron pi varpi rho varrho sigma varsigma tau upsilon phi varphi chi psi omega "
-    "Gamma Delta Theta Lambda Xi Pi Sigma Upsilon Phi Psi Omega digamma ell hbar nabla".split()
+    [
+        "alpha",
+        "beta",
+        "gamma",
+        "delta",
+        "epsilon",
+        "varepsilon",
+        "zeta",
+        "eta",
+        "theta",
+        "vartheta",
+        "iota",
+        "kappa",
+        "varkappa",
+        "lambda",
+        "mu",
+        "nu",
+        "xi",
+        "omicron",
+        "pi",
+        "varpi",
+        "rho",
+        "varrho",
+        "sigma",
+        "varsigma",
+        "tau",
+        "upsilon",
+        "phi",
+        "varphi",
+        "chi",
+        "psi",
+        "omega",
+        "Gamma",
+        "Delta",
+        "Theta",
+        "Lambda",
+        "Xi",
+        "Pi",
+        "Sigma",
+        "Upsilon",
+        "Phi",
+        "Psi",
+        "Omega",
+        "digamma",
+        "ell",
+        "hbar",
+        "nabla",
+    ]
 )
 """Names of letters; the variants of Greek letters are letters of their own."""
 
