@@ -30,7 +30,8 @@ __all__ = ["Setting", "found_numbers", "is_rounding"]
 _BITS = (256, 768)
 _MORE_POINTS = 4
 _MOST_CHOICES, _MOST_TRIED = 60, 12
-_WIDER_TIES = (Fraction(1, 50), Fraction(1, 3))
+_TIES = (Fraction(0), None, Fraction(1, 50), Fraction(1, 3))
+"""Shares within which rates may be one; None is what rounding leaves open."""
 _NEAR_SHARE = 20
 _ROUNDING_PLACES = 300
 _ROUNDING_AT_LEAST = 3
@@ -56,7 +57,6 @@ def found_numbers(
     and else one whose numbers are near.
     """
     formula, unknowns = numbered(claimed, integers=integers)
-    best: tuple[Judged, ...] | None = None
     for bits in _BITS:
         with ctx.workprec(bits):
             names, count = setting.names, len(unknowns) + _MORE_POINTS
@@ -70,11 +70,11 @@ def found_numbers(
             if found is not None:
                 return found
             for groups in _ties(unknowns):
-                best = _better(best, search.tying(groups))
-                if best is not None and all(map(is_rounding, best)):
-                    return best
-            if best is not None or not search.is_unproved:
-                return best
+                found = search.tying(groups)
+                if found is not None:
+                    return found
+            if not search.is_unproved:
+                return None
     return None
 
 
@@ -93,8 +93,8 @@ def is_rounding(found: Judged) -> bool:
 
 def _ties(unknowns: Sequence[Unknown]) -> list[tuple[tuple[int, ...], ...]]:
     """The ways to take several printed numbers for one, the likely ones first."""
-    narrow, near, wide = (tied(unknowns, within) for within in (None, *_WIDER_TIES))
-    return list(dict.fromkeys((narrow, near, apart(unknowns), wide)))
+    ways = [tied(unknowns, within) for within in _TIES]
+    return list(dict.fromkeys((*ways, apart(unknowns))))
 
 
 def _better(
