@@ -6,11 +6,13 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Literal as OneOf
 
+from flint import acb, arb, ctx
+
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.digits import DigitsMatch, match_digits, told
 from closedform.checking.errors import NotJudgedError, SizeError
 from closedform.checking.exact import Scope, Value, exact
-from closedform.checking.ground import Ground
+from closedform.checking.ground import SPECTRAL, Ground
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.spread import spread
 from closedform.checking.written_back import written_back
@@ -64,12 +66,49 @@ def compare(
     different = _differing(value, true)
     if not different:
         return Comparison("equal")
+    if ground.enclosed:
+        _demand_difference(value, true, different[0], ground)
     if has_decimals(claimed) or approximate:
         found = _by_digits(claimed, true, ground, unless="", approximate=approximate)
         if found.how != "different":
             return found
         return Comparison("different", found.reason, different[0], different, found.match)
     return Comparison("different", "", different[0], different)
+
+
+def _demand_difference(value: Value, true: Value, entry: tuple[int, int], ground: Ground) -> None:
+    """Make sure that two values differ in which names stand for roots without a formula.
+
+    The algebra takes such names for free; only balls tell that the numbers differ.
+    Raises:  NotJudgedError if the balls do not, at the finest precision.
+    """
+    i, j = entry
+    difference = (
+        value.rows[i - 1][j - 1] - true.rows[i - 1][j - 1]
+        if isinstance(value, ExactMatrix) and isinstance(true, ExactMatrix)
+        else _difference(value, true)
+    )
+    for bits in FINER:
+        with ctx.workprec(bits):
+            names = ground.sampled()
+            points = [acb(arb(k) / 7, arb(k) / 11) for k in (1, 3, 8)]
+            if any(difference.enclosure(p, names | _elsewhere(p)) != 0 for p in points):
+                return
+    raise NotJudgedError("roots of degree three and more make it undecided")
+
+
+FINER = (64, 512, 4096)
+
+
+def _elsewhere(point: acb) -> dict[str, arb]:
+    """Return a value for the spectral variable."""
+    return {SPECTRAL: point.real}
+
+
+def _difference(value: Value, true: Value) -> Element:
+    if isinstance(value, ExactMatrix) or isinstance(true, ExactMatrix):
+        raise NotJudgedError("a number stands where a matrix is wanted, or the other way round")
+    return value - true
 
 
 def has_decimals(tree: Written) -> bool:

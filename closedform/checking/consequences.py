@@ -161,7 +161,7 @@ def _canonical(setting: Setting, ground: Ground) -> Iterator[Derived]:
 
 def _block_exponentials(setting: Setting, ground: Ground) -> Iterator[Derived]:
     """Yield e^(Jt) of the author's J, or of the diagonal of the author's eigenvalues."""
-    candidates = [v for v in ground.eigenvalues if v is not None]
+    candidates = ground.eigenvalues
     for says in ("J", "real form"):
         for matrix in _matrices(says, setting, ground):
             if isinstance(matrix.value, ExactMatrix):
@@ -200,7 +200,7 @@ def _transitions(setting: Setting, ground: Ground) -> Iterator[Derived]:
 def _own_exponential(p: Derived, ground: Ground) -> Iterator[Derived]:
     """Yield e^(P^-1 A P t), for a P that was stated without J."""
     assert isinstance(p.value, ExactMatrix)  # noqa: S101
-    candidates = [v for v in ground.eigenvalues if v is not None]
+    candidates = ground.eigenvalues
     yield Derived(matrix_exponential(p.value.inverse() @ ground.matrix @ p.value, candidates))
 
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass, replace
 from fractions import Fraction
 from functools import cached_property
@@ -23,7 +23,8 @@ from closedform.checking.matrices import (
     identity,
 )
 from closedform.checking.truth import Piece, Truth
-from closedform.notation.written.tree import Array, Written
+from closedform.notation.written.tree import Array, Declared, Written
+from closedform.notation.written.typed_reader import read_typed
 
 __all__ = ["SPECTRAL", "Ground", "Stretch", "ground_of"]
 
@@ -82,12 +83,17 @@ class Ground:
         return total
 
     @cached_property
-    def eigenvalues(self) -> tuple[Element | None, ...]:
-        """The different eigenvalues, None for those without a closed form."""
+    def eigenvalues(self) -> tuple[Element, ...]:
+        """The different eigenvalues; one without a closed form by the names that it goes by."""
         return tuple(
-            self.number(root.value) if root.value is not None else None
+            self.number(root.value) if root.value is not None else self._named(root.named)
             for root in self.truth.eigenvalues
         )
+
+    def _named(self, text: str) -> Element:
+        """Return what the truth calls an eigenvalue, such as alpha_1 + omega_1*i."""
+        reading = read_typed(text, Declared(parameters=self.enclosed))
+        return self.number(reading.statements[0].members[0])
 
     @cached_property
     def transition(self) -> ExactMatrix:
@@ -119,14 +125,14 @@ class Ground:
     @cached_property
     def exponential(self) -> ExactMatrix:
         """The same as `transition`, worked out from A where the truth does not have it."""
-        return matrix_exponential(self.matrix, [v for v in self.eigenvalues if v is not None])
+        return matrix_exponential(self.matrix, self.eigenvalues)
 
     @cached_property
     def jordan(self) -> ExactMatrix | None:
         """A Jordan form of A, eigenvalues in the order of the truth; None without closed forms."""
         blocks: list[tuple[Element, int]] = []
         for value, root in zip(self.eigenvalues, self.truth.eigenvalues, strict=True):
-            if value is None:
+            if root.value is None:
                 return None
             shifted = self.matrix - identity(self.field, self.size).scaled(value)
             ranks = [self.size, *(shifted.power(k).rank() for k in range(1, root.algebraic + 2))]
@@ -260,8 +266,9 @@ def exact_number(tree: Written, scope: Scope) -> Element:
 
 def ground_of(truth: Truth) -> Ground:
     """Return the ground of one case of a model."""
-    names = (*truth.parameters, *(n for n, formula in truth.quantities if formula is None))
-    field = ElementaryField(truth.parameters, truth.sign, _points(truth))
+    opened = tuple(name for name, formula in truth.quantities if formula is None)
+    names = (*truth.parameters, *opened)
+    field = ElementaryField(names, _sign(truth), () if opened else _points(truth))
     scope = Scope(
         field, truth.time, {name: field.name(name) for name in names}, size=len(truth.states)
     )
@@ -271,6 +278,18 @@ def ground_of(truth: Truth) -> Ground:
         if formula is not None:
             scope = scope.with_symbols({name: exact(formula, scope)})
     return Ground(truth, facts_of(truth), field, scope)
+
+
+def _sign(truth: Truth) -> Callable[[Mapping[tuple[int, ...], Fraction]], int | None]:
+    """Return the truth's signs, for polynomials in which names without formula may stand."""
+    count = len(truth.parameters)
+
+    def sign(polynomial: Mapping[tuple[int, ...], Fraction]) -> int | None:
+        if any(any(exponents[count:]) for exponents in polynomial):
+            return None
+        return truth.sign({exponents[:count]: c for exponents, c in polynomial.items()})
+
+    return sign
 
 
 def _points(truth: Truth) -> list[dict[str, Fraction]]:

@@ -68,7 +68,7 @@ def judge_block_exponential(claim: Claim, setting: Setting) -> Finding:
         matrix = own(ground)
         if matrix is None:
             raise NotJudgedError("no J is stated")
-        return matrix_exponential(matrix, [v for v in ground.eigenvalues if v is not None])
+        return matrix_exponential(matrix, ground.eigenvalues)
 
     if own(setting.ground) is not None:
         return held_against(claim, setting, true, lambda ground: written_back(true(ground)))
@@ -83,7 +83,7 @@ def _any_block_exponential(claim: Claim, setting: Setting) -> Finding:
     rate = value.mapped(Element.derivative).mapped(lambda e: e.at(ground.field.zero))
     diagonal = authors_diagonal(setting, ground) or ground.jordan
     if is_similar(rate, ground) and is_block_form(rate):
-        found = matrix_exponential(rate, [v for v in ground.eigenvalues if v is not None])
+        found = matrix_exponential(rate, ground.eigenvalues)
         if (found - value).is_zero:
             return Finding("holds")
         return Finding("fails", "it is no exponential", written_back(found))

@@ -70,7 +70,7 @@ def _quantities(claim: Claim, ground: Ground) -> Iterator[Element]:
         yield from _of_pair(claim.says, half, square, turn)
     if claim.says in ("time constant", "half-life"):
         for value in ground.eigenvalues:
-            if value is not None and not value.is_zero and field.im(value).is_zero:
+            if not value.is_zero and field.im(value).is_zero:
                 rate = -(field.one / value)
                 yield (
                     rate
@@ -108,8 +108,6 @@ def _pairs(ground: Ground) -> Iterator[tuple[Element, Element]]:
         return
     field, seen = ground.field, []
     for value in ground.eigenvalues:
-        if value is None:
-            continue
         try:
             real, imaginary = field.re(value), field.im(value)
         except NotElementaryError:

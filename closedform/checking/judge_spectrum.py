@@ -166,7 +166,7 @@ def judge_eigenvalues(claim: Claim, setting: Setting) -> Finding:
     counts = [0] * len(truth.eigenvalues)
     digits: list[str] = []
     for forms, count in listed:
-        at, found = _matched(forms, claim, setting, ground)
+        at, found = _matched(forms, claim, setting)
         if found is None or not found.passes:
             reason = found.reason if found is not None else ""
             return Finding("fails", reason or "one that is listed is no eigenvalue", _right(ground))
@@ -188,34 +188,28 @@ def judge_eigenvalues(claim: Claim, setting: Setting) -> Finding:
     else:
         notes = (f"{stated} of {ground.size} are listed",)
     if digits:
-        return Finding("holds to the digits shown", "; ".join(digits), notes=notes)
+        return Finding("holds to the digits shown", "; ".join(filter(None, digits)), notes=notes)
     return Finding("holds", notes=notes)
 
 
 def _matched(
-    forms: tuple[Written, ...], claim: Claim, setting: Setting, ground: Ground
+    forms: tuple[Written, ...], claim: Claim, setting: Setting
 ) -> tuple[int, Comparison | None]:
     """Return which eigenvalue all forms stand for, and how well they do."""
-    scope = setting.scope_of(ground)
     opened = [setting.opened(form) for form in forms]
+    own = [setting.ground_for(form) for form in opened]
     best: tuple[int, Comparison | None] = (0, None)
-    for at in _nearest_first(opened[0], scope, ground):
-        value = eigenvalue_element(ground, at)
-        found = [compare(f, value, scope, ground, approximate=claim.approximate) for f in opened]
+    for at in _nearest_first(opened[0], setting.scope_of(own[0]), own[0]):
+        found = [
+            compare(form, g.eigenvalues[at], setting.scope_of(g), g, approximate=claim.approximate)
+            for form, g in zip(opened, own, strict=True)
+        ]
         worst = max(found, key=lambda f: ("equal", "digits", "rounding", "different").index(f.how))
         if worst.passes:
             return at, worst
         if best[1] is None:
             best = at, worst
     return best
-
-
-def eigenvalue_element(ground: Ground, at: int) -> Element:
-    """Return an eigenvalue as an element; one without closed form is a name of the field."""
-    value = ground.eigenvalues[at]
-    if value is None:
-        raise NotJudgedError("an eigenvalue of degree three and more has no closed form here")
-    return value
 
 
 def _nearest_first(tree: Written, scope: Scope, ground: Ground) -> list[int]:
@@ -231,7 +225,7 @@ def _nearest_first(tree: Written, scope: Scope, ground: Ground) -> list[int]:
         point = element.enclosure(acb(0), values)
         distances = []
         for k in range(len(ground.eigenvalues)):
-            other = eigenvalue_element(ground, k).enclosure(acb(0), values)
+            other = ground.eigenvalues[k].enclosure(acb(0), values)
             distances.append((float(abs(point - other).mid()), k))
     return [k for _, k in sorted(distances)]
 

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
-
 from flint import acb
 
 from closedform.algebra.elementary import Element, NotElementaryError
@@ -12,7 +10,7 @@ from closedform.checking.compare import has_decimals
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Value
 from closedform.checking.ground import Ground
-from closedform.checking.judge_spectrum import eigenvalue_element, roots_claimed
+from closedform.checking.judge_spectrum import roots_claimed
 from closedform.checking.judging import held_against
 from closedform.checking.left_sides import base_and_indices
 from closedform.checking.matrices import ExactMatrix, diagonal, identity
@@ -102,7 +100,7 @@ def _vector(
     if vector.is_zero:
         return Finding("fails", "it is zero")
     known = _eigenvalue_of(claim, setting, ground)
-    candidates = [known] if known is not None else list(_closed(ground))
+    candidates = [known] if known is not None else list(ground.eigenvalues)
     generalized = claim.says == "generalized eigenvector"
     unit = identity(ground.field, ground.size)
     for value in candidates:
@@ -169,7 +167,7 @@ def _eigenvalue_of(claim: Claim, setting: Setting, ground: Ground) -> Element | 
 
 def _nearest(value: Element, ground: Ground) -> Element:
     """Return the eigenvalue that a stated one stands for: itself, or the nearest to a decimal."""
-    closed = list(_closed(ground))
+    closed = list(ground.eigenvalues)
     if value in closed:
         return value
     values = ground.sampled()
@@ -179,17 +177,9 @@ def _nearest(value: Element, ground: Ground) -> Element:
     )
 
 
-def _closed(ground: Ground) -> Iterator[Element]:
-    for at in range(len(ground.eigenvalues)):
-        try:
-            yield eigenvalue_element(ground, at)
-        except NotJudgedError:
-            continue
-
-
 def _other_eigenvalue(vector: ExactMatrix, ground: Ground) -> Element | None:
     image = ground.matrix @ vector
-    for value in _closed(ground):
+    for value in ground.eigenvalues:
         if (image - vector.scaled(value)).is_zero:
             return value
     return None
@@ -294,9 +284,9 @@ def _transformation(
 def _rounded_columns(member: Written, ground: Ground) -> Finding | None:
     """Judge a P with printed decimals column by column, each an eigenvector up to its length."""
     rows = spread(member)
-    if rows is None or any(k is None for k in ground.eigenvalues):
+    if rows is None:
         return None
-    kernels = [eigenvectors(ground, value) for value in _closed(ground)]
+    kernels = [eigenvectors(ground, value) for value in ground.eigenvalues]
     if any(len(kernel) != 1 for kernel in kernels) or len(kernels) != ground.size:
         return None
     left, told = list(kernels), []
@@ -321,7 +311,7 @@ def _columns_text(matrix: ExactMatrix, ground: Ground) -> str:
         for k, entries in enumerate(matrix.columns)
         if _other_eigenvalue(entries, ground) is None
     ]
-    if not wrong or any(value is None for value in ground.eigenvalues):
+    if not wrong:
         return ""
     listed = ", ".join(map(str, wrong))
     one = len(wrong) == 1

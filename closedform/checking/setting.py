@@ -82,7 +82,7 @@ class Setting:
         return next((c.values[-1] for c in self.later if c.says == says and c.values), None)
 
     def _exponential(self, matrix: ExactMatrix) -> ExactMatrix:
-        candidates = [v for v in self.ground.eigenvalues if v is not None]
+        candidates = self.ground.eigenvalues
         return matrix_exponential(matrix, candidates)
 
     def value(self, tree: Written, ground: Ground | None = None) -> Value:
