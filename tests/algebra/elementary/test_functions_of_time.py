@@ -73,6 +73,32 @@ def test_physical_parameters_take_the_place_of_ratios(
     assert response.free_names == {"zeta", "omega"}
 
 
+def below_critical(polynomial: Mapping[tuple[int, ...], Fraction]) -> int | None:
+    """The sign of a polynomial in positive m, c, k with c^2 < 4 m k: enough of them."""
+    signs = {1 if c > 0 else -1 for c in polynomial.values()}
+    if len(signs) == 1:
+        return signs.pop()
+    critical = {(1, 0, 1): 4, (0, 2, 0): -1}
+    if polynomial == critical:
+        return 1
+    return -1 if polynomial == {m: -c for m, c in critical.items()} else None
+
+
+def test_a_spring_and_its_ratios_say_the_same() -> None:
+    field = ElementaryField(("m", "c", "k"), below_critical)
+    m, c, k, t = *map(field.name, ("m", "c", "k")), field.t
+    root = field.sqrt(4 * m * k - c * c)
+    w, z, turn = field.sqrt(k / m), c / (2 * field.sqrt(m * k)), root / (2 * m)
+    assert turn == w * field.sqrt(1 - z * z)
+    free = field.exp(-c / (2 * m) * t) * (field.cos(turn * t) + c / root * field.sin(turn * t))
+    below = field.sqrt(1 - z * z)
+    assert free == field.exp(-z * w * t) / below * field.cos(turn * t - field.atan(z / below))
+    one, two = ((-c + s * field.sqrt(c * c - 4 * m * k)) / (2 * m) for s in (1, -1))
+    assert free == (two * field.exp(one * t) - one * field.exp(two * t)) / (two - one)
+    assert free.derivative().at(field.pi / turn).is_zero
+    assert free.at(field.pi / turn) == -field.exp(-z * field.pi / below)
+
+
 def test_trigonometric_and_hyperbolic_forms_agree() -> None:
     field = ElementaryField()
     t = field.t
