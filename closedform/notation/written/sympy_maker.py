@@ -118,12 +118,17 @@ class Maker:
 
     def _name(self, name: str) -> Any:
         if name not in self.declared.matrices:
-            return sympy.Symbol(named(name))
+            return sympy.Symbol(self._spelled(name))
         n = sympy.Symbol("n", integer=True, positive=True)
         return sympy.MatrixSymbol(named(name), *self.sizes.get(name, (n, n)))
 
+    def _spelled(self, name: str) -> str:
+        """Return a declared name as it is declared; another in the spelling of Python."""
+        declared = name in self.declared.names and name != "lambda"
+        return name if declared else named(name)
+
     def _jet(self, name: str, order: int, at: Written | None) -> Any:
-        function = sympy.Function(named(name))
+        function = sympy.Function(self._spelled(name))
         if not order:
             return function(self.time if at is None else self.of(at))
         derived = sympy.Derivative(function(self.time), (self.time, order))
