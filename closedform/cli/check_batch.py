@@ -142,19 +142,25 @@ def _check_one(
         except ClosedformError as error:
             trouble = error
             statuses.append(status_of(error))
-    _tell(report, files, screen, whole=whole)
+    _tell(report, files, screen, None if whole else source)
     if trouble is not None:
         screen.error(trouble)
     return worst(statuses)
 
 
-def _tell(report: CheckReport, files: Sequence[Path], screen: Screen, *, whole: bool) -> None:
-    """Print the table of a report, or one line about it; colours and bold on a terminal only."""
+def _tell(report: CheckReport, files: Sequence[Path], screen: Screen, source: str | None) -> None:
+    """Print the table of a report, or one line about a source among several.
+
+    There are colours on a terminal only.
+    """
     if screen.quiet:
         return
     from closedform.cli.check_summary import check_line, check_summary
 
-    lines = check_summary(report, files, screen.width) if whole else [check_line(report)]
+    if source is None:
+        lines = check_summary(report, files, screen.width)
+    else:
+        lines = [check_line(report, source)]
     if screen.shows_results:
         screen.lines(lines)
     else:

@@ -50,9 +50,9 @@ def check_summary(report: CheckReport, files: Sequence[Path], width: int) -> lis
     return [*lines, ()]
 
 
-def check_line(report: CheckReport) -> Line:
-    """Return one line on a derivation among several."""
-    return ((f"{report.source}: ", ""), (outcome(report), _style(report)))
+def check_line(report: CheckReport, source: str) -> Line:
+    """Return one line on a derivation among several, by the name it was given."""
+    return ((f"{source}: ", ""), (outcome(report), _style(report)))
 
 
 def _style(report: CheckReport) -> str:

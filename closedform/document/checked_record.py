@@ -56,6 +56,7 @@ def _line(verdict: LineVerdict) -> dict[str, Any]:
         "says": verdict.says,
         "text": line.text,
         "typed": line.typed,
+        "label": line.label or None,
         "place": {
             "file": place.file,
             "key": place.key,

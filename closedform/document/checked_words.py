@@ -124,11 +124,10 @@ def slip_words(slip: Slip) -> str:
 
 
 def place_of(verdict: LineVerdict) -> str:
-    """Return where the line stands in its file: a key, or line and column; empty if unknown."""
-    place = verdict.line.place
-    if place.key:
-        return place.key
-    return "" if place.line is None else f"line {place.line}"
+    """Return where the line stands in its file: a key, or a line; and its label, if it has one."""
+    place, label = verdict.line.place, verdict.line.label
+    where = place.key or ("" if place.line is None else f"line {place.line}")
+    return f"{where} ({label})".lstrip() if label else where
 
 
 def _numbers(report: CheckReport, word: Word) -> list[int]:

@@ -70,7 +70,7 @@ def judged(
     signs = relations if relations is not None else ("=",) * (len(members) - 1)
     read = (Statement(members, signs),) if members else ()
     place = Place("notes/tanks.tex", line=10 + 4 * number, column=3)
-    line = SourceLine(number, text, place)
+    line = SourceLine(number, text, place, label="eq:trace" if number == 3 else "")
     return LineVerdict(line, says, verdict, reason, right, slip, carried_from, notes, read)
 
 

@@ -64,6 +64,7 @@ def test_a_failing_line_has_its_right_form_its_slip_and_its_place() -> None:
     assert fourth["slip"] == "a sign was lost"
     assert fourth["slip_where"] == "before 5 in the numerator"
     assert fourth["place"] == {"file": "notes/tanks.tex", "key": None, "line": 26, "column": 3}
+    assert [line["label"] for line in data["lines"][:3]] == [None, None, "eq:trace"]
     first = data["lines"][0]
     absent = ("right", "right_latex", "slip", "slip_where", "slip_mended", "carried_from")
     assert [first[key] for key in absent] == [None] * 6
