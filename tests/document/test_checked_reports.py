@@ -86,6 +86,14 @@ def test_a_line_that_was_read_is_not_shown_in_the_author_s_words() -> None:
     assert "weird" not in text
 
 
+def test_a_line_that_was_read_but_not_decided_is_shown_both_ways() -> None:
+    line = replace(slipped().lines[7], read=sound().lines[3].read)
+    body = render_check(replace(one_line(), lines=(line,))).partition(BODY)[2]
+    assert r"\begin{about}{as read}" in body
+    assert r"\begin{about}{as typed}" in body
+    assert "textbackslash{}overset" in body
+
+
 def test_a_wide_matrix_is_given_by_its_entries() -> None:
     text = render_check(wide())
     assert r"[\,\cdot\,]_{24} = " in text
