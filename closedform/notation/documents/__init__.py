@@ -1,0 +1,1 @@
+"""LaTeX documents: which formulas they display, and where."""
