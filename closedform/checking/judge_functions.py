@@ -52,16 +52,17 @@ def judge_transition(claim: Claim, setting: Setting) -> Finding:
 
 
 def judge_block_exponential(claim: Claim, setting: Setting) -> Finding:
-    """Judge e^(Jt) for the author's J, the diagonal of the author's eigenvalues, or any J.
+    """Judge e^(Jt), for the author's J if that is right.
 
-    Without either, the line has to be the exponential of a matrix in blocks similar to A.
+    Without a J that is similar to A, the line has to be the exponential of a matrix in
+    blocks that is.
     """
 
     def own(ground: Ground) -> ExactMatrix | None:
         for says in ("J", "real form"):
             found = authors_matrix(says, setting, ground)
-            if found is not None and found.is_square:
-                return found
+            if found is not None and found.shape == ground.matrix.shape:
+                return found if is_similar(found, ground) else None
         return None
 
     def true(ground: Ground) -> Value:

@@ -325,7 +325,7 @@ def _is_diagonal(matrix: ExactMatrix) -> bool:
 
 
 def judge_inverse(claim: Claim, setting: Setting) -> Finding:
-    """Judge P^(-1) as the inverse of the author's P; without one, as a matrix of left chains."""
+    """Judge P^(-1) as the inverse of the author's P; without a right one, as that of any P."""
 
     def true(ground: Ground) -> Value:
         own = authors_matrix("P", setting, ground)
@@ -333,7 +333,8 @@ def judge_inverse(claim: Claim, setting: Setting) -> Finding:
             raise NotJudgedError("no P is stated whose inverse it is to be")
         return own.inverse()
 
-    if setting.author.last("P") is not None:
+    stated = setting.author.last("P")
+    if stated is not None and stated.root is None:
         return held_against(claim, setting, true, lambda ground: written_back(true(ground)))
     ground = setting.ground_for(*map(setting.opened, claim.values))
     matrix = matrix_value(claim.values[-1], setting, ground)

@@ -170,10 +170,8 @@ def _by_shape(statement: Statement, facts: Facts) -> tuple[str, tuple[Written, .
     members = statement.members
     if _has_jets(members, facts):
         return ("equation" if len(members) > 1 else "identity"), ()
-    inside = [node for member in members for node in walk(member)]
-    spectral = {n.name for n in inside if isinstance(n, Symbol)} & (set(SPECTRAL) - facts.names)
-    timed = Symbol(facts.time) in inside
-    if spectral and not timed and (len(members) == 1 or members[-1] == ZERO):
+    polynomials = members[:-1] if members[-1] == ZERO else members
+    if polynomials and all(_is_polynomial(member, facts) for member in polynomials):
         return "characteristic polynomial", ()
     first = members[0]
     if isinstance(first, Symbol) and len(members) > 1 and first.name not in facts.names:
@@ -181,6 +179,13 @@ def _by_shape(statement: Statement, facts: Facts) -> tuple[str, tuple[Written, .
     if isinstance(first, Jet) and len(members) > 1 and first.name not in facts.varying:
         return "definition", members[:1]
     return "identity", ()
+
+
+def _is_polynomial(member: Written, facts: Facts) -> bool:
+    """Whether a formula has a spectral variable in it and not the time."""
+    names = {node.name for node in walk(member) if isinstance(node, Symbol)}
+    spectral = names & (set(SPECTRAL) - facts.names)
+    return bool(spectral) and facts.time not in names and not isinstance(member, Symbol)
 
 
 def _has_jets(members: Sequence[Written], facts: Facts) -> bool:
