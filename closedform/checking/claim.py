@@ -29,6 +29,7 @@ KINDS = (
     "steady state",
     "transform",
     "transfer function",
+    "resolvent",
     "natural frequency",
     "damped frequency",
     "damping ratio",

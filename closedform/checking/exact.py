@@ -57,7 +57,7 @@ class Scope:
     field: ElementaryField
     time: str
     symbols: Mapping[str, Value] = dataclass_field(default_factory=dict)
-    jets: Mapping[tuple[str, int], Element] = dataclass_field(default_factory=dict)
+    jets: Mapping[tuple[str, int], Value] = dataclass_field(default_factory=dict)
     instant: Element | None = None
     exponential: Callable[[ExactMatrix], ExactMatrix] | None = None
     size: int | None = None
@@ -155,7 +155,7 @@ def _symbol(name: str, scope: Scope) -> Value:
     raise UnknownNameError(name)
 
 
-def _jet(node: Jet, scope: Scope) -> Element:
+def _jet(node: Jet, scope: Scope) -> Value:
     known = scope.jets.get((node.name, node.order))
     if known is None:
         found = [order for name, order in scope.jets if name == node.name and order < node.order]
@@ -163,13 +163,13 @@ def _jet(node: Jet, scope: Scope) -> Element:
             raise UnknownNameError(node.name + "'" * node.order)
         known = scope.jets[node.name, max(found)]
         for _ in range(node.order - max(found)):
-            known = known.derivative()
+            known = _entrywise(known, Element.derivative)
     if node.at is None or node.at == Symbol(scope.time):
         return known
     at = exact(node.at, scope)
     if isinstance(at, ExactMatrix):
         raise NotJudgedError("an instant is a number, not a matrix")
-    return known.at(at) if at.is_constant else known.shifted(at - scope.field.t)
+    return _entrywise(known, lambda value: value.at(at))
 
 
 def _sum(terms: tuple[Written, ...], scope: Scope) -> Value:

@@ -50,8 +50,9 @@ class Facts:
         small = name[:1].lower() + name[1:]
         if name in self.names or small == name:
             return None
-        if small in self.varying:
-            return small
+        for known in sorted(self.varying):
+            if known.replace("_", "") == small.replace("_", ""):
+                return known
         return "vector" if self.has_vector(small) else None
 
     def spelled(self, jet: Jet) -> str:

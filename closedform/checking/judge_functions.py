@@ -17,7 +17,12 @@ from closedform.checking.exponential import matrix_exponential
 from closedform.checking.ground import SPECTRAL, Ground, Stretch
 from closedform.checking.judge_vectors import authors_diagonal, authors_matrix, matrix_value
 from closedform.checking.judging import held_against
-from closedform.checking.matrices import ExactMatrix, characteristic_coefficients, column
+from closedform.checking.matrices import (
+    ExactMatrix,
+    characteristic_coefficients,
+    column,
+    identity,
+)
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.similar import is_block_form, is_similar
 from closedform.checking.written_back import written_back
@@ -28,6 +33,7 @@ __all__ = [
     "judge_equation",
     "judge_homogeneous",
     "judge_particular",
+    "judge_resolvent",
     "judge_solution",
     "judge_steady",
     "judge_transform",
@@ -362,6 +368,22 @@ def _entrywise(value: Value, change: Callable[[Element], Element]) -> Value:
     return value.mapped(change) if isinstance(value, ExactMatrix) else change(value)
 
 
+def judge_resolvent(claim: Claim, setting: Setting) -> Finding:
+    """Judge (s I - A)^(-1), whatever its variable is called."""
+
+    def true(ground: Ground) -> Value:
+        unit = identity(ground.field, ground.size)
+        return (unit.scaled(ground.field.name(SPECTRAL)) - ground.matrix).inverse()
+
+    def prepare(member: Written) -> Written:
+        names = {n.name for n in walk(member) if isinstance(n, Symbol)}
+        return setting.renamed(member, names - setting.ground.facts.names - {"A"})
+
+    return held_against(
+        claim, setting, true, lambda g: written_back(true(g), TRANSFORM_NAMES), prepare=prepare
+    )
+
+
 def judge_equation(claim: Claim, setting: Setting) -> Finding:
     """Judge an equation between unknowns, their derivatives and the inputs: one of the model's.
 
@@ -371,7 +393,9 @@ def judge_equation(claim: Claim, setting: Setting) -> Finding:
     ground = setting.ground_for(*map(setting.opened, claim.values))
     for stretch in _stretches(claim, setting):
         inside = ground.within(stretch)
-        scope = replace(setting.scope_of(inside), jets=_jets(inside, stretch))
+        jets = _jets(inside, stretch)
+        scope = replace(setting.scope_of(inside), jets=jets)
+        scope = scope.with_symbols({name: v for (name, order), v in jets.items() if order == 0})
         sides = [exact(setting.opened(member), scope) for member in claim.values]
         for one, other in pairwise(sides):
             if not _minus(one, other).is_zero:
@@ -379,8 +403,11 @@ def judge_equation(claim: Claim, setting: Setting) -> Finding:
     return Finding("holds")
 
 
-def _jets(ground: Ground, stretch: Stretch) -> dict[tuple[str, int], Element]:
-    """Return states as free names, and the derivatives that follow as functions of these."""
+def _jets(ground: Ground, stretch: Stretch) -> dict[tuple[str, int], Value]:
+    """Return states as free names, and the derivatives that follow as functions of these.
+
+    The column of all states has the names that it customarily goes by.
+    """
     field, truth = ground.field, ground.truth
     free = [field.name(f"state {k}") for k in range(ground.size)]
     drive = ground.drive(stretch)
@@ -390,7 +417,9 @@ def _jets(ground: Ground, stretch: Stretch) -> dict[tuple[str, int], Element]:
         for entry, state in zip(row, free, strict=True):
             total = total + entry * state
         rates.append(total)
-    jets: dict[tuple[str, int], Element] = dict(zip(truth.jets, free, strict=True))
+    jets: dict[tuple[str, int], Value] = dict(zip(truth.jets, free, strict=True))
+    for name in ground.facts.vector_names:
+        jets[name, 0], jets[name, 1] = column(field, free), column(field, rates)
     for (name, order), rate in zip(truth.jets, rates, strict=True):
         jets.setdefault((name, order + 1), rate)
     for name in truth.inputs:

@@ -30,6 +30,7 @@ __all__ = ["Left", "base_and_indices", "left_of", "matrix_name", "spelled_jet"]
 DIAGONALISERS = frozenset({"P", "T", "V", "S", "Q", "X", "M", "U"})
 CANONICAL = frozenset({"J", "Lambda", "D"})
 VECTORS = frozenset({"v", "u", "w", "xi", "phi", "q", "e", "psi", "eta", "p", "r", "x", "z"})
+POLYNOMIALS = frozenset({"p", "chi", "P", "Delta", "q", "D", "f", "c", "pi", "phi", "d", "a"})
 ROOTS = frozenset({"lambda", "s", "r", "mu", "theta", "p", "sigma", "nu", "alpha"})
 QUANTITIES = {
     ("omega", "n"): "natural frequency",
@@ -136,6 +137,10 @@ def _of_function(node: Power | Apply, facts: Facts) -> Left | None:
             return Left("P inverse", name)
         case Power(Symbol(name), Negation(Literal(value=one))) if one == 1:
             return Left("P inverse", name) if name in DIAGONALISERS else None
+        case Power(inside, Negation(Literal(value=one))) if one == 1:
+            return Left("resolvent") if _characteristic_sign(inside) == 1 else None
+        case Apply("inverse", (inside,)) if _characteristic_sign(inside) == 1:
+            return Left("resolvent")
         case Power(base, exponent) if base == EULER:
             return _of_exponential(exponent, facts)
         case Apply("exp", (exponent,)):
@@ -175,8 +180,7 @@ def _names_identity(node: Written) -> bool:
 def _of_jet(jet: Jet, facts: Facts) -> Left | None:
     name = spelled_jet(jet.name, jet.order)
     if jet.order == 0 and jet.at is not None and _is_spectral(jet.at, facts):
-        whose = facts.transformed(jet.name)
-        return Left("transform", whose) if whose else Left("characteristic polynomial")
+        return _of_spectral(jet.name, facts)
     if jet.name in facts.varying or facts.has_vector(jet.name):
         if jet.at is None or jet.at == Symbol(facts.time):
             return Left("output" if name in facts.outputs else "solution", name)
@@ -227,12 +231,16 @@ def _of_product(factors: tuple[Written, ...], facts: Facts) -> Left | None:
             if left and left.says == "P inverse" and left.subject == last:
                 return Left("J", last)
         case (Symbol(name), argument) if _is_spectral(argument, facts):
-            whose = facts.transformed(name)
-            if whose:
-                return Left("transform", whose)
-            if name in ("p", "chi", "P", "Delta", "q", "D", "f", "c", "pi", "phi"):
-                return Left("characteristic polynomial")
+            return _of_spectral(name, facts)
     return None
+
+
+def _of_spectral(name: str, facts: Facts) -> Left | None:
+    """Return what a name stands for that depends on s or lambda."""
+    whose = facts.transformed(name)
+    if whose:
+        return Left("transform", whose)
+    return Left("characteristic polynomial") if name in POLYNOMIALS else None
 
 
 def _of_exponential(exponent: Written, facts: Facts) -> Left | None:

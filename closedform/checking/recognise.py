@@ -11,6 +11,7 @@ from closedform.checking.facts import Facts
 from closedform.checking.left_sides import Left, base_and_indices, left_of
 from closedform.notation.written.tree import (
     Array,
+    Identity,
     Jet,
     Literal,
     Statement,
@@ -98,7 +99,7 @@ def _left(statement: Statement, facts: Facts) -> Left | None:
     """Return what the left side of a statement names."""
     first, rest = statement.members[0], statement.members[1:]
     left = left_of(first, facts) if rest else None
-    if left is not None and left.says == "solution" and _has_jets(rest, facts):
+    if left is not None and left.says == "solution" and _is_equation(first, rest, facts):
         left = None
     if left is None and _is_vector_name(first, rest):
         return Left("eigenvector", first.name if isinstance(first, Symbol) else "")
@@ -185,16 +186,32 @@ def _is_polynomial(member: Written, facts: Facts) -> bool:
     """Whether a formula has a spectral variable in it and not the time."""
     names = {node.name for node in walk(member) if isinstance(node, Symbol)}
     spectral = names & (set(SPECTRAL) - facts.names)
-    return bool(spectral) and facts.time not in names and not isinstance(member, Symbol)
+    matrices = any(isinstance(node, Array | Identity) for node in walk(member))
+    lone = isinstance(member, Symbol) or matrices or "A" in names - facts.names
+    return bool(spectral) and facts.time not in names and not lone
 
 
 def _has_jets(members: Sequence[Written], facts: Facts) -> bool:
     """Whether a function of time of the model stands in a formula, at no fixed instant."""
     return any(
-        isinstance(node, Jet) and node.at is None and node.name in facts.varying
+        isinstance(node, Jet)
+        and node.at is None
+        and (node.name in facts.varying or facts.has_vector(node.name))
         for member in members
         for node in walk(member)
     )
+
+
+def _is_equation(first: Written, rest: Sequence[Written], facts: Facts) -> bool:
+    """Whether what begins with a function of the model's goes on with such functions.
+
+    A column of states stands bare in x' = A x.
+    """
+    if _has_jets(rest, facts):
+        return True
+    names = {n.name for member in rest for n in walk(member) if isinstance(n, Symbol)}
+    derived = isinstance(first, Jet) and first.order > 0
+    return derived and any(facts.has_vector(name) for name in names)
 
 
 def _is_vector_name(first: Written, rest: Sequence[Written]) -> bool:
