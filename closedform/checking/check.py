@@ -7,6 +7,7 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 
 from closedform.checking.author import Author
+from closedform.checking.cases import allowed_cases
 from closedform.checking.claim import Claim, SourceLine
 from closedform.checking.facts import Facts
 from closedform.checking.ground import Ground, ground_of
@@ -51,10 +52,12 @@ def check_file(path: Path | str, *, model: Path | str | None = None) -> CheckRep
 def check_lines(source: Source, model: Model | ParametricModel | DrivenModel) -> CheckReport:
     """Return the report on the lines of a source, held against a model.
 
-    Where the parameters make cases, that case is taken in which most lines hold, unless the
-    source names one.
+    Where the parameters make cases, that case is taken in which most lines hold, among those
+    that the source allows.
+
+    Raises:  NoSuchCaseError if it allows none.
     """
-    truths = truths_of(model)
+    truths = allowed_cases(truths_of(model), source.case or source.where, source.path)
     best: tuple[int, tuple[LineVerdict, ...], str] | None = None
     for truth in truths:
         ground = ground_of(truth)
@@ -66,8 +69,8 @@ def check_lines(source: Source, model: Model | ParametricModel | DrivenModel) ->
             break
     assert best is not None  # noqa: S101  a model has a case
     return CheckReport(
-        name=source.name,
-        title=source.title,
+        name=source.path.stem,
+        title=source.title or source.path.stem,
         source=source.path.name,
         model=source.model_path.name,
         model_title=model.stacked.title if isinstance(model, DrivenModel) else model.title,

@@ -30,7 +30,8 @@ class Facts:
     @cached_property
     def declared(self) -> Declared:
         """The names in the form in which a reader of formulas wants them."""
-        own = self.varying - self.inputs
+        vectors = {name for name in self.vector_names if name.endswith("vec")}
+        own = (self.varying - self.inputs) | vectors
         return Declared(own, self.parameters, self.inputs, time=self.time)
 
     @cached_property
@@ -38,7 +39,7 @@ class Facts:
         """Names that stand for the column of all states: x, and their common letter."""
         bases = {state.rstrip("'").split("_")[0].rstrip("0123456789") for state in self.states}
         found = {"x", "xvec", *(bases if len(bases) == 1 else ())}
-        found |= {f"{name}vec" for name in found}
+        found |= {f"{name.removesuffix('vec')}vec" for name in (*found, *bases)}
         return frozenset(found - self.names)
 
     def has_vector(self, name: str) -> bool:

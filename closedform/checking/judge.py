@@ -11,7 +11,7 @@ from closedform.checking.balls import NoValueError
 from closedform.checking.claim import Claim, Group
 from closedform.checking.compare import has_decimals
 from closedform.checking.consequences import carried_from
-from closedform.checking.errors import NotJudgedError
+from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.judge_functions import (
     judge_block_exponential,
     judge_equation,
@@ -93,8 +93,13 @@ def judge(claim: Claim, setting: Setting) -> Finding:
 
     What cannot be decided is `not read`, with the reason.
     """
+    judge_it = JUDGES.get(claim.says, judge_identity)
     try:
-        return JUDGES.get(claim.says, judge_identity)(claim, setting)
+        try:
+            return judge_it(claim, setting)
+        except UnknownNameError as error:
+            found = judge_it(claim, replace(setting, general=True))
+            return found if found.passes else Finding("not read", str(error))
     except ZeroDivisionError:
         return Finding("fails", "it divides by zero")
     except OUTSIDE as error:

@@ -57,6 +57,9 @@ def judge_characteristic(claim: Claim, setting: Setting) -> Finding:
     """
     sign = claim.sign**setting.ground.size
 
+    if not claim.values and claim.equation:
+        return Finding("holds", "the equation of the eigenvalues")
+
     def true(ground: Ground) -> Element:
         value = ground.characteristic
         return value if sign == 1 else -value

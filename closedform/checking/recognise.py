@@ -24,6 +24,8 @@ __all__ = ["claims_of"]
 
 ZERO = Literal(Fraction(0))
 VECTORS = ("v", "u", "w", "xi", "phi", "q", "e", "psi", "eta", "r", "x", "z", "p", "g", "h")
+OF_STATES = frozenset({"solution", "value", "initial value", "particular solution"})
+OF_STATES |= {"steady state", "homogeneous solution"}
 SPECTRAL = ("lambda", "s", "r", "mu", "z")
 
 
@@ -133,9 +135,11 @@ def _claim(
         )
     names = _names(members, left, facts)
     values = members[len(names) :]
+    if left.says in OF_STATES and any(_is_column(value, facts) for value in values):
+        left = replace(left, subject="vector")
     polynomial = left.says == "characteristic polynomial"
     if polynomial and ends_in_zero:
-        values = values[:-1] if len(values) > 1 or names else values
+        values = values[:-1]
     return Claim(
         line,
         (statement,),
@@ -180,6 +184,16 @@ def _by_shape(statement: Statement, facts: Facts) -> tuple[str, tuple[Written, .
     if isinstance(first, Jet) and len(members) > 1 and first.name not in facts.varying:
         return "definition", members[:1]
     return "identity", ()
+
+
+def _is_column(value: Written, facts: Facts) -> bool:
+    """Whether a column with an entry for every state stands in a formula.
+
+    A bold letter may be that of a state: the vector is meant.
+    """
+    size = len(facts.states)
+    shapes = [(len(n.rows), len(n.rows[0])) for n in walk(value) if isinstance(n, Array)]
+    return size > 1 and ((size, 1) in shapes or (1, size) in shapes)
 
 
 def _is_polynomial(member: Written, facts: Facts) -> bool:

@@ -7,10 +7,12 @@ from dataclasses import dataclass, field, replace
 
 from closedform.checking.author import Author
 from closedform.checking.claim import Claim
+from closedform.checking.customary import customary
 from closedform.checking.exact import Scope, Value, exact
 from closedform.checking.exponential import matrix_exponential
 from closedform.checking.ground import SPECTRAL, Ground
 from closedform.checking.matrices import ExactMatrix
+from closedform.checking.motion import MotionOn
 from closedform.checking.verdict import Word
 from closedform.notation.written.tree import Symbol, Written, changed, walk
 
@@ -43,6 +45,8 @@ class Setting:
     ground: Ground
     author: Author = field(default_factory=Author)
     later: tuple[Claim, ...] = ()
+    general: bool = False
+    """Whether names that nobody stated have their customary meaning."""
 
     def opened(self, tree: Written) -> Written:
         """Return a formula with the author's own names replaced by what they stand for."""
@@ -72,7 +76,10 @@ class Setting:
         symbols[SPECTRAL] = ground.field.name(SPECTRAL)
         if "A" not in facts.names:
             symbols["A"] = ground.matrix
-        return replace(ground.scope, symbols=symbols, exponential=self._exponential)
+        jets = MotionOn(ground)
+        if self.general:
+            symbols = {**customary(ground), **symbols}
+        return replace(ground.scope, symbols=symbols, jets=jets, exponential=self._exponential)
 
     def stated(self, says: str) -> Written | None:
         """Return the value that the author states last for something, or else states later."""

@@ -1,0 +1,85 @@
+"""Which cases of the parameters a derivation is about."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from closedform.algebra.elementary import Element, ElementaryField
+from closedform.checking.exact import Scope, exact
+from closedform.checking.truth import Truth
+from closedform.errors import InputError
+from closedform.notation.comparison import read_comparison
+from closedform.notation.expression import Expression
+from closedform.notation.written.from_expression import written_from
+
+__all__ = ["NoSuchCaseError", "allowed_cases"]
+
+
+class NoSuchCaseError(InputError):
+    """A case that the model does not have."""
+
+    def __init__(self, path: Path, case: str, conditions: tuple[str, ...]) -> None:
+        super().__init__(path, case, conditions)
+        self.path, self.case, self.conditions = path, case, conditions
+
+    def __str__(self) -> str:
+        listed = "; ".join(
+            f"{k}: {text or 'all values'}" for k, text in enumerate(self.conditions, 1)
+        )
+        return (
+            f"{self.path}: the model has no case {self.case!r}; name one by its number, or by a "
+            f"condition that holds in it. It has: {listed}"
+        )
+
+
+def allowed_cases(truths: tuple[Truth, ...], case: str, path: Path) -> tuple[Truth, ...]:
+    """Return the cases that a derivation may be about: all if `case` is empty.
+
+    `case` is a number from 1, or a condition such as c^2 < 4*m*k: the cases stay in which it
+    holds at every sample of the parameters.
+
+    Raises:  NoSuchCaseError if none does; what `read_comparison` raises.
+    """
+    text = case.strip()
+    if not text:
+        return truths
+    if text.isdigit():
+        if not 1 <= int(text) <= len(truths):
+            raise NoSuchCaseError(path, text, tuple(truth.condition for truth in truths))
+        return (truths[int(text) - 1],)
+    names = frozenset(truths[0].parameters)
+    left, relation, right = read_comparison(text, names=names)
+    found = tuple(
+        truth
+        for truth in truths
+        if truth.samples and all(_holds(left, relation, right, s) for s in _samples(truth))
+    )
+    if not found:
+        raise NoSuchCaseError(path, text, tuple(truth.condition for truth in truths))
+    return found
+
+
+def _samples(truth: Truth) -> list[dict[str, Element]]:
+    field = ElementaryField()
+    samples = []
+    for sample in truth.samples:
+        values = {name: exact(tree, Scope(field, truth.time)) for name, tree in sample.items()}
+        samples.append({n: value for n, value in values.items() if isinstance(value, Element)})
+    return samples
+
+
+def _holds(left: Expression, relation: str, right: Expression, sample: dict[str, Element]) -> bool:
+    field = next(iter(sample.values())).field
+    scope = Scope(field, "t", symbols=dict(sample))
+    one, other = (exact(written_from(side), scope) for side in (left, right))
+    if not (isinstance(one, Element) and isinstance(other, Element)):
+        return False
+    sign = (one - other).sign()
+    return {
+        "<": sign == -1,
+        "<=": sign in (-1, 0),
+        ">": sign == 1,
+        ">=": sign in (0, 1),
+        "=": sign == 0,
+        "!=": sign in (-1, 1),
+    }[relation]
