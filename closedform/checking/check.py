@@ -120,10 +120,13 @@ def _judged_line(line: _Line, setting: Setting) -> tuple[LineVerdict, Author]:
                 line.read.line, other, setting.ground.facts, of=line.read.of, at=line.read.at
             )
             found, later = _all(claims, setting)
+            undecided = any(j.finding.word == "not read" for j in judgements)
             if all(j.finding.passes for j in found):
                 judgements, author = found, later
                 notes = ("it holds as it can also be read", *notes)
                 break
+            if undecided and not any(j.finding.word == "not read" for j in found):
+                judgements, author = found, later
     return _verdict(line, judgements, setting, notes), author
 
 
