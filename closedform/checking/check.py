@@ -71,8 +71,8 @@ def check_lines(source: Source, model: Model | ParametricModel | DrivenModel) ->
     return CheckReport(
         name=source.path.stem,
         title=source.title or source.path.stem,
-        source=source.path.name,
-        model=source.model_path.name,
+        source=str(source.path),
+        model=source.model,
         model_title=model.stacked.title if isinstance(model, DrivenModel) else model.title,
         lines=best[1],
         time=truths[0].time,

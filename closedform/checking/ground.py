@@ -6,7 +6,7 @@ from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass, replace
 from fractions import Fraction
 from functools import cached_property
-from itertools import pairwise
+from itertools import count, pairwise
 
 from flint import acb, arb
 
@@ -23,6 +23,7 @@ from closedform.checking.matrices import (
     identity,
 )
 from closedform.checking.truth import Piece, Truth
+from closedform.checking.truths.put_in import substituted
 from closedform.notation.written.tree import Array, Declared, Written
 from closedform.notation.written.typed_reader import read_typed
 
@@ -34,8 +35,12 @@ SPECTRAL = "spectral variable"
 
 @dataclass(frozen=True)
 class Stretch:
-    """An interval of time, with an instant inside it; `end` is None for ever."""
+    """An interval of time, with an instant inside it; `end` is None for ever.
 
+    `index` is its place on the time axis, the same on every ground of a model.
+    """
+
+    index: int
     start: Element
     end: Element | None
     inside: Element
@@ -120,7 +125,7 @@ class Ground:
             start + self.field.one if end is None else (start + end) / two
             for start, end in zip(starts, ends, strict=True)
         ]
-        return tuple(map(Stretch, starts, ends, insides))
+        return tuple(map(Stretch, count(), starts, ends, insides))
 
     @cached_property
     def exponential(self) -> ExactMatrix:
@@ -209,7 +214,8 @@ class Ground:
 
     def within(self, stretch: Stretch) -> Ground:
         """Return the ground on which steps and pieces have their values on an interval."""
-        return replace(self, scope=replace(self.scope, instant=stretch.inside))
+        own = self.stretches[stretch.index]
+        return replace(self, scope=replace(self.scope, instant=own.inside))
 
     def drive(self, stretch: Stretch) -> list[Element]:
         """Return the entries of B u(t) on an interval; empty for a free model."""
@@ -221,9 +227,10 @@ class Ground:
         return self._on(self.truth.inputs.get(name, ()), stretch)
 
     def _on(self, pieces: tuple[Piece, ...], stretch: Stretch) -> Element | None:
+        own = self.stretches[stretch.index]
         for piece in pieces:
-            if self._covers(piece, stretch):
-                return exact_number(piece.formula, replace(self.scope, instant=stretch.inside))
+            if self._covers(piece, own):
+                return exact_number(piece.formula, replace(self.scope, instant=own.inside))
         return None
 
     def _covers(self, piece: Piece, stretch: Stretch) -> bool:
@@ -248,7 +255,8 @@ class Ground:
             return self
         key = frozenset(known)
         if key not in self._put:
-            self._put[key] = _put(self, known)
+            whole = len(known) == len(self.truth.parameters)
+            self._put[key] = _put(self, known) if whole else _put_partly(self, key)
         return self._put[key]
 
     @cached_property
@@ -320,6 +328,14 @@ def _put(ground: Ground, known: Mapping[str, Written]) -> Ground:
         if formula is not None:
             scope = scope.with_symbols({name: exact(formula, scope)})
     return Ground(ground.truth, ground.facts, ground.field, scope, frozenset(known))
+
+
+def _put_partly(ground: Ground, names: frozenset[str]) -> Ground:
+    """Return a ground of its own for what is left of the parameters: their signs are others."""
+    left = ground_of(substituted(ground.truth, names))
+    own = next((s for s in ground.stretches if s.inside == ground.scope.instant), None)
+    left = replace(left, put_in=names, facts=ground.facts)
+    return left if own is None else left.within(own)
 
 
 def _base(ground: Ground) -> frozenset[str]:

@@ -3,14 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
+from fractions import Fraction
 
 from closedform.checking.claim import Claim
 from closedform.checking.compare import Comparison, compare
+from closedform.checking.digits import DigitsMatch
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.exact import Value
 from closedform.checking.ground import Ground
 from closedform.checking.setting import Finding, Setting
-from closedform.notation.written.tree import Written
+from closedform.notation.written.tree import Literal, Negation, Written, changed
 
 __all__ = ["held_against", "place_text"]
 
@@ -48,7 +51,7 @@ def held_against(
             return Finding(
                 "fails",
                 failure_text(found),
-                right(ground),
+                corrected(opened, found.match) or right(ground),
                 entries=found.wrong,
                 pairs=((opened, truth),),
             )
@@ -60,6 +63,29 @@ def held_against(
         told = next(found.reason for found in passed if found.how == "digits")
         return Finding("holds to the digits shown", told, notes=notes)
     return Finding("holds", notes=notes)
+
+
+def corrected(member: Written, match: DigitsMatch | None) -> Written | None:
+    """Return a formula of the right form with the right digits in it, None if it has none."""
+    if match is None or not match.judged:
+        return None
+    right = {
+        (found.literal.start, found.literal.end): found
+        for found in match.wrong
+        if found.literal.start >= 0
+    }
+    if len(right) != len(match.wrong):
+        return None
+
+    def change(node: Written) -> Written | None:
+        found = right.get((node.start, node.end)) if isinstance(node, Literal) else None
+        if found is None or not isinstance(node, Literal):
+            return None
+        value = Fraction(found.correct)
+        new = replace(node, value=abs(value))
+        return Negation(new) if value < 0 else new
+
+    return changed(member, change)
 
 
 def failure_text(found: Comparison) -> str:

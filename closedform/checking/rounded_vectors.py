@@ -1,63 +1,130 @@
-"""Columns of printed decimals that stand for a direction: right if some length fits them all."""
+"""Columns of printed decimals that stand for a direction: right if some length fits them all.
+
+Whether numbers y exist with |M y - p| <= h, for the printed parts p and half the worth h of
+their last digits, is decided by elimination of one unknown after the other (J. Fourier, 1827;
+T. Motzkin, 1936), with numbers that are known to 200 bits, far beyond any digit that is shown.
+"""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Mapping, Sequence
 from fractions import Fraction
 
 from flint import acb, arb, ctx, fmpq
 
+from closedform.checking.errors import NotJudgedError
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.spread import spread
-from closedform.notation.written.tree import Literal, Negation, Written
+from closedform.notation.written.tree import (
+    Constant,
+    Literal,
+    Negation,
+    Product,
+    Sum,
+    Written,
+    walk,
+)
 
 __all__ = ["rounded_direction"]
 
-BITS = 256
+BITS = 320
+SLACK = Fraction(1, 2**200)
+MOST = 4000
+"""Inequalities up to which an unknown is eliminated."""
+
+I = Constant("i")  # noqa: E741  the imaginary unit
+Number = tuple[Fraction, Fraction]
+Inequality = tuple[tuple[Fraction, ...], Fraction]
+"""Coefficients a and a bound b of a y <= b."""
 
 
-def rounded_direction(claimed: Written | Sequence[Written], true: ExactMatrix) -> str | None:
-    """Return words for a column of decimals that is a multiple of a true one, rounded; else None.
+def rounded_direction(
+    claimed: Written | Sequence[Written],
+    kernel: Sequence[ExactMatrix],
+    names: Mapping[str, arb],
+    value: Callable[[Written], acb],
+) -> str | None:
+    """Return words for a column of decimals that lies in a space, rounded; else None.
 
-    Some factor has to exist with which every entry, rounded to the digits shown, is what is
-    printed; an entry without decimals has to be met exactly, and fixes the factor.
+    `kernel` is a basis, columns of exact numbers in which `names` stand; `value` gives the ball
+    of an entry that is printed without decimals.  Some combination has to exist with which
+    every entry, rounded to the digits shown, is what is printed.
+
+    Raises:  NotJudgedError where the entries are not numbers printed in full, or too many
+             unknowns are left to tell.
     """
     rows = spread(claimed) if isinstance(claimed, Written) else tuple((e,) for e in claimed)
-    if rows is None or len(rows[0]) != 1 or len(rows) != true.shape[0]:
-        return None
+    if rows is None or len(rows[0]) != 1 or not kernel or len(rows) != kernel[0].shape[0]:
+        raise NotJudgedError("it is no column of numbers")
     with ctx.workprec(BITS):
-        exact = [row[0].enclosure(acb(0), {}) for row in true.rows]
-        if not all(value.imag == 0 for value in exact):
-            return None
-        low, high = -arb("inf"), arb("inf")
-        for (entry,), value in zip(rows, exact, strict=True):
-            printed = _printed(entry)
-            if printed is None:
-                return None
-            number, half = printed
-            if value.real.contains(0):
-                if not (abs(number) <= half):
-                    return None
-                continue
-            ends = [_ball(number + half) / value.real, _ball(number - half) / value.real]
-            ends.sort(key=lambda end: float(end.mid()))
-            low = ends[0] if bool(ends[0] > low) else low
-            high = ends[1] if bool(ends[1] < high) else high
-        if bool(low > high):
-            return None
-    return "some length of the vector fits every digit"
+        printed = [_printed(row[0], value) for row in rows]
+        columns = [[e.enclosure(acb(0), names) for e in vector.entries] for vector in kernel]
+        is_real = all(p[0][1] == p[1][1] == 0 for p in printed) and all(
+            ball.imag == 0 for vector in columns for ball in vector
+        )
+        ways = (acb(1),) if is_real else (acb(1), acb(0, 1))
+        unknowns = [[ball * way for ball in vector] for vector in columns for way in ways]
+        system: list[Inequality] = []
+        for k, (number, half) in enumerate(printed):
+            parts = [_parts(vector[k]) for vector in unknowns]
+            for part in range(len(ways)):
+                row = tuple(own[part] for own in parts)
+                slack = half[part] + SLACK * (1 + max(map(abs, row)))
+                system.append((row, number[part] + slack))
+                system.append((tuple(-a for a in row), slack - number[part]))
+    return "some length of the vector fits every digit" if _has_solution(system) else None
 
 
-def _printed(entry: Written) -> tuple[Fraction, Fraction] | None:
-    """Return a printed number and half the worth of its last digit, 0 for an exact one."""
+def _has_solution(system: list[Inequality]) -> bool:
+    """Whether inequalities have a common solution, by eliminating one unknown after the other."""
+    while system and system[0][0]:
+        above = [(row, bound) for row, bound in system if row[-1] > 0]
+        below = [(row, bound) for row, bound in system if row[-1] < 0]
+        rest = {(row[:-1], bound) for row, bound in system if row[-1] == 0}
+        if len(above) * len(below) > MOST:
+            raise NotJudgedError("too many lengths and phases are possible to tell")
+        for high, most in above:
+            for low, least in below:
+                a, b = -low[-1], high[-1]
+                row = tuple(a * x + b * y for x, y in zip(high[:-1], low[:-1], strict=True))
+                rest.add((row, a * most + b * least))
+        system = sorted(rest)
+    return all(bound >= 0 for _, bound in system)
+
+
+def _printed(entry: Written, value: Callable[[Written], acb]) -> tuple[Number, Number]:
+    """Return the parts of a printed number, and half the worth of the last digit of each.
+
+    A part without decimals is exact.
+    """
+    if not any(isinstance(node, Literal) and node.is_decimal for node in walk(entry)):
+        return _parts(value(entry)), (Fraction(0), Fraction(0))
     match entry:
+        case Literal(number, last_place):
+            return (number, Fraction(0)), (last_place / 2, Fraction(0))
         case Negation(inside):
-            found = _printed(inside)
-            return None if found is None else (-found[0], found[1])
-        case Literal(value, last_place, is_decimal):
-            return value, last_place / 2 if is_decimal else Fraction(0)
-    return None
+            (real, imaginary), half = _printed(inside, value)
+            return (-real, -imaginary), half
+        case Sum(terms):
+            found = [_printed(term, value) for term in terms]
+            number, half = (
+                (sum((f[k][0] for f in found), start), sum((f[k][1] for f in found), start))
+                for k, start in ((0, Fraction(0)), (1, Fraction(0)))
+            )
+            return number, half
+        case Product((one, other)) if I in (one, other):
+            (real, imaginary), half = _printed(other if one == I else one, value)
+            return (-imaginary, real), (half[1], half[0])
+    raise NotJudgedError("an entry with decimals is no number printed in full")
 
 
-def _ball(value: Fraction) -> arb:
-    return arb(fmpq(value.numerator, value.denominator))
+def _parts(ball: acb) -> Number:
+    return _middle(ball.real), _middle(ball.imag)
+
+
+def _middle(ball: arb) -> Fraction:
+    """Return the middle of a ball that is known to 200 bits and more."""
+    if not ball.rad() < arb(fmpq(1, 2**210)) * (1 + abs(ball)):
+        raise NotJudgedError("an entry is not known to enough digits")
+    mantissa, exponent = ball.mid().man_exp()
+    return Fraction(int(mantissa)) * Fraction(2) ** int(exponent)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import dataclass, field, replace
+from functools import partial
 
 from closedform.checking.author import Author
 from closedform.checking.claim import Claim
@@ -11,7 +12,6 @@ from closedform.checking.customary import customary
 from closedform.checking.exact import Scope, Value, exact
 from closedform.checking.exponential import matrix_exponential
 from closedform.checking.ground import SPECTRAL, Ground
-from closedform.checking.matrices import ExactMatrix
 from closedform.checking.motion import MotionOn
 from closedform.checking.verdict import Word
 from closedform.notation.written.tree import Symbol, Written, changed, walk
@@ -79,7 +79,12 @@ class Setting:
         jets = MotionOn(ground)
         if self.general:
             symbols = {**customary(ground), **symbols}
-        return replace(ground.scope, symbols=symbols, jets=jets, exponential=self._exponential)
+        return replace(
+            ground.scope,
+            symbols=symbols,
+            jets=jets,
+            exponential=partial(matrix_exponential, candidates=ground.eigenvalues),
+        )
 
     def stated(self, says: str) -> Written | None:
         """Return the value that the author states last for something, or else states later."""
@@ -87,10 +92,6 @@ class Setting:
         if entry is not None:
             return entry.value
         return next((c.values[-1] for c in self.later if c.says == says and c.values), None)
-
-    def _exponential(self, matrix: ExactMatrix) -> ExactMatrix:
-        candidates = self.ground.eigenvalues
-        return matrix_exponential(matrix, candidates)
 
     def value(self, tree: Written, ground: Ground | None = None) -> Value:
         """Return the exact value of an author's formula."""
