@@ -14,12 +14,13 @@ from closedform.checking.ground import Ground, ground_of
 from closedform.checking.judge import Judgement, judged, stated
 from closedform.checking.lines import ReadLine, read_line
 from closedform.checking.recognise import claims_of
-from closedform.checking.setting import Setting
+from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips import diagnosed
 from closedform.checking.source import Source, read_source
 from closedform.checking.truths.solved import truths_of
-from closedform.checking.verdict import CheckReport, LineVerdict, Word
+from closedform.checking.verdict import CheckReport, LineVerdict, Slip, Word
 from closedform.model import DrivenModel, Model, ParametricModel, load
+from closedform.notation.written.tree import Written
 
 __all__ = ["check_file", "check_lines"]
 
@@ -157,12 +158,20 @@ def _verdict(
         says_text(gravest.claim, judgements),
         finding.word,
         reason,
-        None if finding.passes else finding.right,
+        _right(finding, slip),
         slip,
         gravest.carried_from,
         (*notes, *finding.notes),
         reading.statements if reading is not None else (),
     )
+
+
+def _right(finding: Finding, slip: Slip | None) -> Written | None:
+    """Return the right form of a line that does not hold, near to what stands there."""
+    if finding.passes:
+        return None
+    mended = slip.mended if slip is not None else None
+    return finding.right if mended is None else mended
 
 
 def says_text(claim: Claim, judgements: Sequence[Judgement] = ()) -> str:

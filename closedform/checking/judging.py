@@ -13,7 +13,7 @@ from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.exact import Value
 from closedform.checking.ground import Ground
 from closedform.checking.setting import Finding, Setting
-from closedform.notation.written.tree import Literal, Negation, Written, changed
+from closedform.notation.written.tree import Literal, Negation, Symbol, Written, changed, walk
 
 __all__ = ["held_against", "place_text"]
 
@@ -66,8 +66,14 @@ def held_against(
 
 
 def corrected(member: Written, match: DigitsMatch | None) -> Written | None:
-    """Return a formula of the right form with the right digits in it, None if it has none."""
+    """Return a formula of the right form with the right digits in it, None if it has none.
+
+    Where the numbers are far from those printed, only a single number is given so: in a
+    function they may be others than the author meant.
+    """
     if match is None or not match.judged:
+        return None
+    if match.kind != "rounding" and any(isinstance(node, Symbol) for node in walk(member)):
         return None
     right = {
         (found.literal.start, found.literal.end): found
@@ -78,6 +84,9 @@ def corrected(member: Written, match: DigitsMatch | None) -> Written | None:
         return None
 
     def change(node: Written) -> Written | None:
+        if isinstance(node, Negation) and isinstance(node.operand, Literal):
+            inside = change(node.operand)
+            return inside.operand if isinstance(inside, Negation) else None
         found = right.get((node.start, node.end)) if isinstance(node, Literal) else None
         if found is None or not isinstance(node, Literal):
             return None
