@@ -114,7 +114,7 @@ def _check_claim_file(table: Table) -> None:
                 "these are notes about the lines of a LaTeX document; hand in the document, "
                 "which lies beside them"
             )
-            raise SourceFileError(table.place("line"), reason)
+            raise SourceFileError(table.place("line[1]"), reason)
     table.check(table.content, (*SETTINGS, "claim"))
 
 

@@ -81,7 +81,7 @@ def claimed(table: Table) -> tuple[SourceLine, ...]:
             raise ClaimFormulaError(table.place(within[:-1]), len(given))
         key = given[0]
         place = table.place(within + key)
-        if not table.is_as_typed(within + key, formulas[key]):
+        if key == "latex" and not table.is_as_typed(within + key, formulas[key]):
             raise SourceValueError(
                 place,
                 "a text in which a backslash and a letter mean a control character",
