@@ -9,7 +9,6 @@ from closedform.checking.balls import NoValueError
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.setting import Finding, Setting
-from closedform.checking.slips import names
 from closedform.checking.slips.aims import aimed
 from closedform.checking.slips.edits import (
     angles,
@@ -19,23 +18,53 @@ from closedform.checking.slips.edits import (
     sine_signs,
     term_signs,
 )
+from closedform.checking.slips.factors import factors, left_out, normalised
+from closedform.checking.slips.matrix_slips import inverses, rearranged, swapped_products
+from closedform.checking.slips.motion import derivatives, forced_signs, parts
+from closedform.checking.slips.narrowing import narrowed
 from closedform.checking.slips.numbers import one_number
+from closedform.checking.slips.quantities import conversions, digits, rounded
+from closedform.checking.slips.shifts import delays, other_names
+from closedform.checking.slips.spectrum_slips import (
+    canonical,
+    eigenvectors,
+    listed,
+    root_numbers,
+    transformations,
+)
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.verdict import Slip
 
 __all__ = ["diagnosed"]
 
 Source = Callable[[Trial], Iterator[Candidate]]
-SOURCES: tuple[Source, ...] = (
+OF_WHOLE: tuple[Source, ...] = (
+    swapped_products,
+    inverses,
+    canonical,
+    rounded,
+    digits,
+    normalised,
+    forced_signs,
+)
+OF_PLACES: tuple[Source, ...] = (
     term_signs,
     sine_signs,
     chains,
-    functions,
     angles,
-    one_number,
-    extra_terms,
+    functions,
+    delays,
 )
-"""Where candidates come from, the most specific first."""
+LATER: tuple[Source, ...] = (
+    rearranged,
+    parts,
+    derivatives,
+    conversions,
+    eigenvectors,
+    transformations,
+)
+LAST: tuple[Source, ...] = (other_names, root_numbers, one_number, left_out, extra_terms, factors)
+"""Where candidates come from, the most specific first; of places once more in one entry only."""
 OUTSIDE = (NotJudgedError, NotElementaryError, NoValueError, ArithmeticError)
 
 
@@ -48,11 +77,18 @@ def diagnosed(claim: Claim, finding: Finding, setting: Setting) -> tuple[Slip | 
 
 
 def _slip(claim: Claim, finding: Finding, setting: Setting) -> Slip | None:
+    if claim.says == "eigenvalues":
+        found = listed(claim, finding, setting)
+        if found is not None:
+            return found
     for trial in aimed(claim, finding, setting):
-        for source in SOURCES:
-            found = _first(trial, source)
-            if found is not None:
-                return found
+        inner = narrowed(trial)
+        stages = ((trial, OF_WHOLE), (inner, OF_PLACES), (trial, LATER), (inner, LAST))
+        for tried, sources in stages:
+            for source in sources:
+                found = _first(tried, source)
+                if found is not None:
+                    return found
     return None
 
 

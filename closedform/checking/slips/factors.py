@@ -1,0 +1,88 @@
+"""Slips that are a factor of all of it, or a term of the sum that is left out."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import replace
+from fractions import Fraction
+
+from flint import acb, arb, ctx
+
+from closedform.algebra.elementary import Element
+from closedform.checking.matrices import ExactMatrix
+from closedform.checking.slips import names
+from closedform.checking.slips.making import terms_of, times
+from closedform.checking.slips.measuring import real, size
+from closedform.checking.slips.numbers import one_number
+from closedform.checking.slips.solving import simplest
+from closedform.checking.slips.trial import BITS, Candidate, Trial
+from closedform.checking.slips.wording import part_text
+from closedform.checking.written_back import written_back
+from closedform.notation.written.plain_form import plain_written
+from closedform.notation.written.tree import Sum, Written
+
+__all__ = ["factors", "left_out", "normalised"]
+
+
+def normalised(trial: Trial) -> Iterator[Candidate]:
+    """Yield a column of probabilities divided by its sum, where the line has a multiple of it."""
+    true, own = trial.true, trial.own()
+    if trial.claim.says not in ("steady state", "eigenvector", "value"):
+        return
+    if not isinstance(true, ExactMatrix) or not isinstance(own, ExactMatrix):
+        return
+    field = trial.ground.field
+    if own.shape != true.shape or sum(true.entries, field.zero) != field.one:
+        return
+    total = sum(own.entries, field.zero)
+    if total.is_zero or not (own - true.scaled(total)).is_zero:
+        return
+    for candidate in one_number(trial):
+        yield replace(candidate, name=names.NOT_NORMALISED)
+    by_sum = times(written_back(field.one / total), trial.tree)
+    yield Candidate(
+        names.NOT_NORMALISED, f"the sum is {plain_written(written_back(total))}", by_sum
+    )
+
+
+def factors(trial: Trial) -> Iterator[Candidate]:
+    """Yield the formula times a plain number, where that is all that is missing."""
+    if not trial.points or len(trial.points) * len(trial.points[0].true) < 2 or trial.loose:
+        return
+    values = trial.values(trial.tree)
+    if values is None:
+        return
+    with ctx.workprec(BITS):
+        ratio: acb | None = None
+        for own, point in zip(values, trial.points, strict=True):
+            for one, two in zip(own, point.true, strict=True):
+                if size(one) < arb(1) / 10**20:
+                    continue
+                ratio = ratio if ratio is not None else two / one
+                if size(two - ratio * one) > size(two) * real(Fraction(1, 10**12)):
+                    return
+        written = None if ratio is None else simplest(ratio.mid())
+    if written is not None:
+        where = f"the factor {plain_written(written)} is missing"
+        yield Candidate(names.FACTOR, where, times(written, trial.tree))
+
+
+def left_out(trial: Trial) -> Iterator[Candidate]:
+    """Yield the formula with one of the terms of the true one added, a constant one or any."""
+    true = trial.true
+    if not isinstance(true, Element) or trial.entry is not None or true.is_constant:
+        return
+    terms = terms_of(written_back(true))
+    for term in terms if len(terms) > 1 else ():
+        where = part_text(term)
+        yield Candidate(names.TERM_LEFT_OUT, where, _added(trial.tree, term))
+    own = trial.own()
+    if isinstance(own, Element):
+        rest = true - own
+        if rest.is_constant and trial.claim.says in ("solution", "output"):
+            missing = written_back(rest)
+            yield Candidate(names.CONSTANT, part_text(missing), _added(trial.tree, missing))
+
+
+def _added(tree: Written, term: Written) -> Written:
+    return Sum((*terms_of(tree), term))
