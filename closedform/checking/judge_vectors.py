@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from flint import acb
 
 from closedform.algebra.elementary import Element, NotElementaryError
@@ -13,7 +15,12 @@ from closedform.checking.ground import Ground
 from closedform.checking.judge_spectrum import roots_claimed
 from closedform.checking.judging import held_against
 from closedform.checking.left_sides import base_and_indices
-from closedform.checking.matrices import ExactMatrix, diagonal, identity
+from closedform.checking.matrices import (
+    ExactMatrix,
+    characteristic_coefficients,
+    diagonal,
+    identity,
+)
 from closedform.checking.rounded_vectors import rounded_direction
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.similar import is_block_form, is_similar
@@ -114,8 +121,8 @@ def _vector(
     right = None
     for value in candidates:
         kernel = eigenvectors(ground, value)
-        if has_decimals(member) and not generalized and len(kernel) == 1:
-            told = rounded_direction(member, kernel[0])
+        if has_decimals(member) and not generalized:
+            told = _rounded(member, kernel or _direction(ground, value), setting, ground)
             if told is not None:
                 return Finding("holds to the digits shown", told)
         right = right or (written_back(kernel[0]) if kernel and not generalized else None)
@@ -188,6 +195,46 @@ def _other_eigenvalue(vector: ExactMatrix, ground: Ground) -> Element | None:
 def eigenvectors(ground: Ground, value: Element) -> list[ExactMatrix]:
     """Return a basis of the eigenvectors of an eigenvalue."""
     return (ground.matrix - identity(ground.field, ground.size).scaled(value)).kernel()
+
+
+def _direction(ground: Ground, value: Element) -> list[ExactMatrix]:
+    """Return an eigenvector of an eigenvalue that has a name and no formula.
+
+    Its entries are polynomials in the name: a column of the adjugate of lambda I - A, found by
+    the scheme of Horner, that is not zero at the value of the name.
+    Raises:  NotJudgedError where there is more than one direction.
+    """
+    named = [root.value is None and root.geometric == 1 for root in ground.truth.eigenvalues]
+    if not any(own == value and one for own, one in zip(ground.eigenvalues, named, strict=True)):
+        raise NotJudgedError("the eigenvectors of this eigenvalue are not known in closed form")
+    unit = identity(ground.field, ground.size)
+    coefficients = characteristic_coefficients(ground.matrix)
+    part, total = unit, unit
+    for coefficient in reversed(coefficients[1:-1]):
+        part = ground.matrix @ part + unit.scaled(coefficient)
+        total = total.scaled(value) + part
+    names = ground.sampled()
+    for vector in total.columns:
+        if any(not entry.enclosure(acb(0), names).contains(0) for entry in vector.entries):
+            return [vector]
+    raise NotJudgedError("the eigenvectors of this eigenvalue are not known in closed form")
+
+
+def _rounded(
+    printed: Written | Sequence[Written],
+    kernel: list[ExactMatrix],
+    setting: Setting,
+    ground: Ground,
+) -> str | None:
+    """Return words for printed decimals that are a direction of a kernel, rounded; else None."""
+
+    def value(tree: Written) -> acb:
+        number = setting.value(tree, ground)
+        if isinstance(number, ExactMatrix):
+            raise NotJudgedError("a matrix stands where a number is wanted")
+        return number.enclosure(acb(0), ground.sampled())
+
+    return rounded_direction(printed, kernel, ground.sampled, value)
 
 
 def judge_canonical(claim: Claim, setting: Setting) -> Finding:
@@ -271,7 +318,7 @@ def _transformation(
         return Finding("fails", _columns_text(matrix, ground) or "A P is not P J")
     if not is_block_form(product):
         if has_decimals(member):
-            finding = _rounded_columns(member, ground)
+            finding = _rounded_columns(member, setting, ground)
             if finding is not None:
                 return finding
         return Finding("fails", _columns_text(matrix, ground) or "P^-1 A P is not in blocks")
@@ -281,18 +328,22 @@ def _transformation(
     return Finding("holds", "P^-1 A P is in blocks")
 
 
-def _rounded_columns(member: Written, ground: Ground) -> Finding | None:
+def _rounded_columns(member: Written, setting: Setting, ground: Ground) -> Finding | None:
     """Judge a P with printed decimals column by column, each an eigenvector up to its length."""
     rows = spread(member)
     if rows is None:
         return None
-    kernels = [eigenvectors(ground, value) for value in ground.eigenvalues]
+    kernels = [eigenvectors(ground, v) or _direction(ground, v) for v in ground.eigenvalues]
     if any(len(kernel) != 1 for kernel in kernels) or len(kernels) != ground.size:
         return None
     left, told = list(kernels), []
     for entries in zip(*rows, strict=True):
         found = next(
-            ((k, text) for k in left if (text := rounded_direction(entries, k[0])) is not None),
+            (
+                (k, text)
+                for k in left
+                if (text := _rounded(entries, k, setting, ground)) is not None
+            ),
             None,
         )
         if found is None:

@@ -9,20 +9,21 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
 from fractions import Fraction
+from math import prod
 
 from flint import acb, arb, ctx, fmpq
 
+from closedform.checking.compare import has_decimals
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.spread import spread
 from closedform.notation.written.tree import (
-    Constant,
     Literal,
     Negation,
     Product,
+    Quotient,
     Sum,
     Written,
-    walk,
 )
 
 __all__ = ["rounded_direction"]
@@ -32,7 +33,6 @@ SLACK = Fraction(1, 2**200)
 MOST = 4000
 """Inequalities up to which an unknown is eliminated."""
 
-I = Constant("i")  # noqa: E741  the imaginary unit
 Number = tuple[Fraction, Fraction]
 Inequality = tuple[tuple[Fraction, ...], Fraction]
 """Coefficients a and a bound b of a y <= b."""
@@ -41,14 +41,15 @@ Inequality = tuple[tuple[Fraction, ...], Fraction]
 def rounded_direction(
     claimed: Written | Sequence[Written],
     kernel: Sequence[ExactMatrix],
-    names: Mapping[str, arb],
+    names: Callable[[], Mapping[str, arb]],
     value: Callable[[Written], acb],
 ) -> str | None:
     """Return words for a column of decimals that lies in a space, rounded; else None.
 
-    `kernel` is a basis, columns of exact numbers in which `names` stand; `value` gives the ball
-    of an entry that is printed without decimals.  Some combination has to exist with which
-    every entry, rounded to the digits shown, is what is printed.
+    `kernel` is a basis, columns of exact numbers; `names` gives balls for the names in them, and
+    `value` the ball of a formula that is printed without decimals, both at flint's current
+    precision.  Some combination has to exist with which every entry, rounded to the digits
+    shown, is what is printed.
 
     Raises:  NotJudgedError where the entries are not numbers printed in full, or too many
              unknowns are left to tell.
@@ -58,7 +59,8 @@ def rounded_direction(
         raise NotJudgedError("it is no column of numbers")
     with ctx.workprec(BITS):
         printed = [_printed(row[0], value) for row in rows]
-        columns = [[e.enclosure(acb(0), names) for e in vector.entries] for vector in kernel]
+        known = names()
+        columns = [[e.enclosure(acb(0), known) for e in vector.entries] for vector in kernel]
         is_real = all(p[0][1] == p[1][1] == 0 for p in printed) and all(
             ball.imag == 0 for vector in columns for ball in vector
         )
@@ -97,7 +99,7 @@ def _printed(entry: Written, value: Callable[[Written], acb]) -> tuple[Number, N
 
     A part without decimals is exact.
     """
-    if not any(isinstance(node, Literal) and node.is_decimal for node in walk(entry)):
+    if not has_decimals(entry):
         return _parts(value(entry)), (Fraction(0), Fraction(0))
     match entry:
         case Literal(number, last_place):
@@ -106,16 +108,29 @@ def _printed(entry: Written, value: Callable[[Written], acb]) -> tuple[Number, N
             (real, imaginary), half = _printed(inside, value)
             return (-real, -imaginary), half
         case Sum(terms):
-            found = [_printed(term, value) for term in terms]
-            number, half = (
-                (sum((f[k][0] for f in found), start), sum((f[k][1] for f in found), start))
-                for k, start in ((0, Fraction(0)), (1, Fraction(0)))
-            )
-            return number, half
-        case Product((one, other)) if I in (one, other):
-            (real, imaginary), half = _printed(other if one == I else one, value)
-            return (-imaginary, real), (half[1], half[0])
+            numbers, halves = zip(*(_printed(term, value) for term in terms), strict=True)
+            return _added(numbers), _added(halves)
+        case Product(factors) if sum(map(has_decimals, factors)) == 1:
+            own = next(f for f in factors if has_decimals(f))
+            rest = [value(f) for f in factors if f is not own]
+            return _scaled(_printed(own, value), prod(rest, start=acb(1)))
+        case Quotient(above, below) if not has_decimals(below):
+            return _scaled(_printed(above, value), 1 / value(below))
     raise NotJudgedError("an entry with decimals is no number printed in full")
+
+
+def _added(numbers: Sequence[Number]) -> Number:
+    return sum((n[0] for n in numbers), Fraction(0)), sum((n[1] for n in numbers), Fraction(0))
+
+
+def _scaled(printed: tuple[Number, Number], factor: acb) -> tuple[Number, Number]:
+    """Return a printed number times a factor that is real or imaginary."""
+    (real, imaginary), half = printed
+    a, b = _parts(factor)
+    if a and b:
+        raise NotJudgedError("a factor in front of decimals is neither real nor imaginary")
+    number = (a * real - b * imaginary, a * imaginary + b * real)
+    return number, (abs(a) * half[0] + abs(b) * half[1], abs(a) * half[1] + abs(b) * half[0])
 
 
 def _parts(ball: acb) -> Number:
