@@ -6,13 +6,14 @@ from pathlib import Path
 
 from closedform.algebra.elementary import Element, ElementaryField
 from closedform.checking.exact import Scope, exact
+from closedform.checking.ground import Ground, ground_of
 from closedform.checking.truth import Truth
 from closedform.errors import InputError
 from closedform.notation.comparison import read_comparison
 from closedform.notation.expression import Expression
 from closedform.notation.written.from_expression import written_from
 
-__all__ = ["NoSuchCaseError", "allowed_cases"]
+__all__ = ["Grounds", "NoSuchCaseError", "allowed_cases"]
 
 
 class NoSuchCaseError(InputError):
@@ -30,6 +31,25 @@ class NoSuchCaseError(InputError):
             f"{self.path}: the model has no case {self.case!r}; name one by its number, or by a "
             f"condition that holds in it. It has: {listed}"
         )
+
+
+class Grounds:
+    """The grounds of the cases of a model, each made when it is first asked for."""
+
+    def __init__(self, truths: tuple[Truth, ...], path: Path) -> None:
+        self._truths, self._path = truths, path
+        self._made: dict[int, Ground] = {}
+
+    def of(self, truth: Truth) -> Ground:
+        """Return the ground of a case."""
+        if id(truth) not in self._made:
+            self._made[id(truth)] = ground_of(truth)
+        return self._made[id(truth)]
+
+    def allowed(self, where: str, truth: Truth) -> tuple[Truth, ...]:
+        """Return the cases that a line allows: the one at hand first if it is among them."""
+        found = allowed_cases(self._truths, where, self._path)
+        return (truth,) if any(other is truth for other in found) else found
 
 
 def allowed_cases(truths: tuple[Truth, ...], case: str, path: Path) -> tuple[Truth, ...]:

@@ -1,0 +1,177 @@
+"""The lines of a derivation judged one after another, and their verdicts."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+from closedform.checking.author import Author
+from closedform.checking.cases import Grounds
+from closedform.checking.claim import Claim, SourceLine
+from closedform.checking.facts import Facts
+from closedform.checking.judge import Judgement, judged, stated
+from closedform.checking.lines import ReadLine, read_line
+from closedform.checking.recognise import claims_of
+from closedform.checking.setting import Finding, Setting
+from closedform.checking.slips import diagnosed
+from closedform.checking.truth import Truth
+from closedform.checking.verdict import LineVerdict, Slip, Word
+from closedform.notation.written.tree import Statement, Written
+
+__all__ = ["JudgedLine", "judged_lines", "verdict_on"]
+
+GRAVEST_FIRST: tuple[Word, ...] = (
+    "fails",
+    "not read",
+    "carried",
+    "holds to the digits shown",
+    "holds up to order",
+    "holds up to scale",
+    "holds",
+)
+"""A line that says several things has the verdict of the gravest finding."""
+EARLIER = ("definition", "identity")
+"""Claims that may give a name to something that the rest of a line uses."""
+
+
+@dataclass(frozen=True, slots=True)
+class JudgedLine:
+    """A line as it was read, what was found of each of its claims, and in which setting.
+
+    There is no judgement of a line that was not read.
+    """
+
+    read: ReadLine
+    judgements: tuple[Judgement, ...]
+    setting: Setting
+    notes: tuple[str, ...] = ()
+
+    @property
+    def passes(self) -> bool:
+        """Whether everything that it says may stand."""
+        return bool(self.judgements) and all(j.finding.passes for j in self.judgements)
+
+    @property
+    def undecided(self) -> bool:
+        """Whether something in it was not decided."""
+        return any(j.finding.word == "not read" for j in self.judgements)
+
+
+def judged_lines(lines: Sequence[SourceLine], truth: Truth, grounds: Grounds) -> list[JudgedLine]:
+    """Judge lines in one case of the model, each in the light of those before it.
+
+    A line that names a case of its own is judged in the cases that it allows, the first one in
+    which it holds.
+    """
+    ground = grounds.of(truth)
+    read = [_read(line, ground.facts) for line in lines]
+    author = Author(kept=ground.facts.names)
+    found = []
+    for place, (line, _) in enumerate(read):
+        later = tuple(claim for _, claims in read[place + 1 :] for claim in claims)
+        own = [ground]
+        if line.line.where:
+            own = [grounds.of(other) for other in grounds.allowed(line.line.where, truth)]
+        for candidate in own:
+            judged_line, after = _judged_line(line, Setting(candidate, author, later))
+            if judged_line.passes:
+                break
+        author = after
+        found.append(judged_line)
+    return found
+
+
+def _read(line: SourceLine, facts: Facts) -> tuple[ReadLine, tuple[Claim, ...]]:
+    read = read_line(line, facts)
+    if read.reading is None:
+        return read, ()
+    return read, _claims(read, read.reading.statements, facts)
+
+
+def _claims(read: ReadLine, statements: tuple[Statement, ...], facts: Facts) -> tuple[Claim, ...]:
+    return claims_of(read.line, statements, facts, of=read.of, at=read.at)
+
+
+def _judged_line(read: ReadLine, setting: Setting) -> tuple[JudgedLine, Author]:
+    """Judge a line as it is read first, or as it can also be read if it holds so only."""
+    if read.reading is None:
+        return JudgedLine(read, (), setting), setting.author
+    facts, notes = setting.ground.facts, _ambiguities(read)
+    best, author = _all(read, _claims(read, read.reading.statements, facts), setting, notes)
+    if best.passes:
+        return best, author
+    for other in read.reading.others:
+        found, after = _all(read, _claims(read, other, facts), setting, notes)
+        if found.passes:
+            remark = "it holds as it can also be read"
+            return replace(found, notes=(remark, *notes)), after
+        if best.undecided and not found.undecided:
+            best, author = found, after
+    return best, author
+
+
+def _all(
+    read: ReadLine, claims: tuple[Claim, ...], setting: Setting, notes: tuple[str, ...]
+) -> tuple[JudgedLine, Author]:
+    """Judge the claims of a line: first what gives names, then the rest, in order."""
+    judgements, author = [], setting.author
+    for claim in sorted(claims, key=lambda claim: claim.says not in EARLIER):
+        found = judged(claim, replace(setting, author=author))
+        judgements.append(found)
+        author = stated(author, found)
+    judgements.sort(key=lambda judgement: claims.index(judgement.claim))
+    return JudgedLine(read, tuple(judgements), setting, notes), author
+
+
+def verdict_on(line: JudgedLine) -> LineVerdict:
+    """Return the verdict on a line: that of its gravest finding, with the slip behind it."""
+    source, reading = line.read.line, line.read.reading
+    if reading is None or not line.judgements:
+        says = source.says or "formula"
+        return LineVerdict(source, says, "not read", line.read.trouble or "it says nothing")
+    gravest = min(line.judgements, key=lambda j: GRAVEST_FIRST.index(j.finding.word))
+    finding = gravest.finding
+    slip, reason = None, finding.reason
+    if finding.word == "fails":
+        slip, reason = diagnosed(gravest.claim, finding, line.setting)
+    elif finding.word == "carried":
+        reason = f"it follows from line {gravest.carried_from}"
+    return LineVerdict(
+        source,
+        says_text(gravest.claim, line.judgements),
+        finding.word,
+        reason,
+        _right(finding, slip),
+        slip,
+        gravest.carried_from,
+        (*line.notes, *finding.notes),
+        reading.statements,
+    )
+
+
+def _right(finding: Finding, slip: Slip | None) -> Written | None:
+    """Return the right form of a line that does not hold, near to what stands there."""
+    if finding.passes:
+        return None
+    mended = slip.mended if slip is not None else None
+    return finding.right if mended is None else mended
+
+
+def says_text(claim: Claim, judgements: Sequence[Judgement] = ()) -> str:
+    """Return what a line claims, with its subjects."""
+    if claim.says in ("P", "J", "matrix", "P inverse", "exp J", "exp A", "real form"):
+        return claim.says
+    same = [j.claim.subject for j in judgements if j.claim.says == claim.says]
+    subjects = ", ".join(dict.fromkeys(subject for subject in same if subject))
+    return f"{claim.says} {subjects or claim.subject}".strip()
+
+
+def _ambiguities(read: ReadLine) -> tuple[str, ...]:
+    """Return how ambiguous places were read."""
+    if read.reading is None:
+        return ()
+    return tuple(
+        f"{found.text} is read as {found.chosen}, not {found.other}"
+        + (f", as {found.decided_by} is declared" if found.decided_by else "")
+        for found in read.reading.ambiguities
+    )
