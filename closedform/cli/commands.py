@@ -173,7 +173,7 @@ def check(  # noqa: PLR0913 - one parameter for each option
     _finish(screen, work)
 
 
-@app.command(short_help="List the starter models, or copy one to work from.")
+@app.command(short_help="List the starters, models and derivations, or copy one.")
 def starter(
     *,
     name: Annotated[
@@ -187,7 +187,10 @@ def starter(
         bool, typer.Option("--replace", help="Replace a file of the same name.")
     ] = False,
 ) -> None:
-    """Copy a starter model to work from; without a NAME, list them all."""
+    """Copy a starter to work from; without a NAME, list them all.
+
+    A starter is a model, or a derivation to be checked, which comes with its model.
+    """
     screen = Screen()
 
     def work() -> None:
@@ -196,9 +199,11 @@ def starter(
         from closedform.cli.starters import copy_starter, listing
 
         if name is not None:
-            path = copy_starter(name, into, replace=replace)
-            screen.path(path)
-            hint = f"Write it up with: closedform writeup {shlex.quote(str(path))}"
+            command, paths = copy_starter(name, into, replace=replace)
+            for path in paths:
+                screen.path(path)
+            words = "Check it" if command == "check" else "Write it up"
+            hint = f"{words} with: closedform {command} {shlex.quote(str(paths[0]))}"
         else:
             for line in listing():
                 screen.line(line)

@@ -1,9 +1,10 @@
-"""The starter models that are shipped: listed, or copied to be worked on."""
+"""The starters that are shipped, models and derivations: listed, or copied to be worked on."""
 
 from __future__ import annotations
 
 import os
-import tomllib
+import re
+from dataclasses import dataclass
 from difflib import get_close_matches
 from importlib.resources.abc import Traversable
 from pathlib import Path
@@ -13,9 +14,20 @@ from closedform.document.files import write_whole
 from closedform.document.templating import templates_folder
 from closedform.errors import InputError
 
-__all__ = ["StarterExistsError", "UnknownStarterError", "copy_starter", "listing", "starters"]
+__all__ = [
+    "Starter",
+    "StarterExistsError",
+    "UnknownStarterError",
+    "copy_starter",
+    "listing",
+    "starters",
+]
 
-ENDING = ".toml"
+MODEL = ".toml"
+ITS_MODEL = "_model.toml"
+"""Follows the name of a derivation in that of the model beside it."""
+ENDINGS = (".toml", ".tex")
+TITLE = re.compile(r'(?m)^(?:% closedform: )?title = "([^"\n]+)"$')
 
 
 class UnknownStarterError(InputError):
@@ -45,37 +57,68 @@ class StarterExistsError(InputError):
         )
 
 
-def starters() -> dict[str, Traversable]:
-    """Return the shipped starter models by name."""
+@dataclass(frozen=True, slots=True)
+class Starter:
+    """A shipped model, or a derivation with the model that it is to be held against.
+
+    `files` are to be copied, that which a command works on first; `command` is its name.
+    """
+
+    name: str
+    title: str
+    files: tuple[Traversable, ...]
+    command: str
+
+
+def starters() -> dict[str, Starter]:
+    """Return what is shipped by name: the models, and then the derivations."""
     folder = templates_folder() / "starters"
-    files = sorted(folder.iterdir(), key=lambda file: file.name)
-    return {file.name.removesuffix(ENDING): file for file in files if file.name.endswith(ENDING)}
+    models = {path.name: path for path in folder.iterdir() if path.name.endswith(MODEL)}
+    found = [
+        Starter(name.removesuffix(MODEL), _title(path), (path,), "writeup")
+        for name, path in sorted(models.items())
+    ]
+    beside = {path.name: path for path in (folder / "derivations").iterdir()}
+    for name, path in sorted(beside.items()):
+        stem, _, ending = name.rpartition(".")
+        if f".{ending}" in ENDINGS and f"{stem}{ITS_MODEL}" in beside:
+            files = (path, beside[f"{stem}{ITS_MODEL}"])
+            found.append(Starter(stem, _title(path), files, "check"))
+    return {starter.name: starter for starter in found}
 
 
 def listing() -> list[str]:
     """Return one line for each starter, its name and then its title."""
     found = starters()
     width = max(map(len, found), default=0)
-    return [f"{name:{width}}  {_title(file)}" for name, file in found.items()]
+    return [f"{name:{width}}  {starter.title}" for name, starter in found.items()]
 
 
-def copy_starter(name: str, into: Path, *, replace: bool = False) -> Path:
-    """Copy a starter into a folder, made if missing, and return the path of the copy.
+def copy_starter(name: str, into: Path, *, replace: bool = False) -> tuple[str, list[Path]]:
+    """Copy a starter into a folder, made if missing.
 
-    Raises:  UnknownStarterError; StarterExistsError if a file is in its place and `replace`
-             is not set; CannotWriteError.
+    Returns the command that works on it, and the paths of the copies, that for the command first.
+
+    Raises:  UnknownStarterError; StarterExistsError if a file is in the place of one of them and
+             `replace` is not set; CannotWriteError.
     """
     found = starters()
-    chosen = name.removesuffix(ENDING)
+    chosen = next((name.removesuffix(end) for end in ENDINGS if name.endswith(end)), name)
     if chosen not in found:
         nearest = get_close_matches(chosen, found, n=1)
         raise UnknownStarterError(name, nearest[0] if nearest else None)
     check_folder(into)
-    path = into / f"{chosen}{ENDING}"
-    if os.path.lexists(path) and not replace:
-        raise StarterExistsError(str(path))
-    return write_whole(path, found[chosen].read_bytes())
+    starter = found[chosen]
+    paths = [into / file.name for file in starter.files]
+    for path in paths:
+        if os.path.lexists(path) and not replace:
+            raise StarterExistsError(str(path))
+    for path, file in zip(paths, starter.files, strict=True):
+        write_whole(path, file.read_bytes())
+    return starter.command, paths
 
 
 def _title(file: Traversable) -> str:
-    return str(tomllib.loads(file.read_text(encoding="utf-8"))["title"])
+    """Return the title that a TOML file has as a key, or a LaTeX file in a comment."""
+    title = TITLE.search(file.read_text(encoding="utf-8"))
+    return title[1] if title else file.name

@@ -35,7 +35,9 @@ def test_help_of_a_command_names_every_option() -> None:
     assert "--replace" in text
 
 
-@pytest.mark.parametrize("words", [["--help"], ["writeup", "--help"], ["starter", "--help"]])
+@pytest.mark.parametrize(
+    "words", [["--help"], ["writeup", "--help"], ["check", "--help"], ["starter", "--help"]]
+)
 def test_help_fits_eighty_columns(words: list[str]) -> None:
     done = run(*words, COLUMNS="80", TERMINAL_WIDTH="80")
     assert done.returncode == 0

@@ -8,10 +8,15 @@ import pytest
 from typer.testing import CliRunner
 
 import closedform
+from closedform.checking.source import read_source
 from closedform.cli.commands import app
-from tests.cli.commanding import ROOT, run
+from tests.cli.commanding import ROOT, everything, run
 
-SHIPPED = sorted((ROOT / "templates" / "starters").glob("*.toml"))
+STARTERS = ROOT / "templates" / "starters"
+SHIPPED = sorted(STARTERS.glob("*.toml"))
+DERIVATIONS = [
+    path for path in sorted((STARTERS / "derivations").iterdir()) if "_model" not in path.stem
+]
 
 
 @pytest.fixture(autouse=True)
@@ -23,7 +28,10 @@ def test_the_list_has_every_starter_with_its_title(runner: CliRunner) -> None:
     done = runner.invoke(app, ["starter"])
     assert done.exit_code == 0
     listed = [line.split(None, 1) for line in done.stdout.splitlines()]
-    assert listed == [[path.stem, closedform.load(path).title] for path in SHIPPED]
+    titles = [closedform.load(path).title for path in SHIPPED]
+    titles += [read_source(path).title for path in DERIVATIONS]
+    names = [path.stem for path in (*SHIPPED, *DERIVATIONS)]
+    assert listed == [list(pair) for pair in zip(names, titles, strict=True)]
     assert max(map(len, done.stdout.splitlines())) <= 80
 
 
@@ -35,9 +43,37 @@ def test_a_starter_is_copied_byte_for_byte(runner: CliRunner, tmp_path: Path, pa
     assert (tmp_path / path.name).read_bytes() == path.read_bytes()
 
 
-def test_the_ending_may_be_written(runner: CliRunner, tmp_path: Path) -> None:
-    assert runner.invoke(app, ["starter", "two_tank_cascade.toml"]).exit_code == 0
-    assert (tmp_path / "two_tank_cascade.toml").is_file()
+@pytest.mark.parametrize("path", DERIVATIONS, ids=[path.stem for path in DERIVATIONS])
+def test_a_derivation_comes_with_its_model(runner: CliRunner, tmp_path: Path, path: Path) -> None:
+    done = runner.invoke(app, ["starter", path.stem])
+    model = read_source(path).model
+    assert done.exit_code == 0
+    assert done.stdout.splitlines() == [path.name, model]
+    assert everything(tmp_path) == sorted([path.name, model])
+    for name in (path.name, model):
+        assert (tmp_path / name).read_bytes() == (path.parent / name).read_bytes()
+
+
+def test_nothing_is_copied_where_one_of_two_files_would_be_replaced(
+    runner: CliRunner, tmp_path: Path
+) -> None:
+    mine = tmp_path / "coupled_tables_model.toml"
+    mine.write_text("mine", encoding="utf-8")
+    done = runner.invoke(app, ["starter", "coupled_tables"])
+    assert done.exit_code == 2
+    assert "coupled_tables_model.toml: this file exists" in done.stderr
+    assert everything(tmp_path) == [mine.name]
+    assert mine.read_text(encoding="utf-8") == "mine"
+
+
+def test_the_model_of_a_derivation_is_no_starter_of_its_own(runner: CliRunner) -> None:
+    assert runner.invoke(app, ["starter", "coupled_tables_model"]).exit_code == 2
+
+
+@pytest.mark.parametrize("name", ["two_tank_cascade.toml", "coupled_tables.tex"])
+def test_the_ending_may_be_written(runner: CliRunner, tmp_path: Path, name: str) -> None:
+    assert runner.invoke(app, ["starter", name]).exit_code == 0
+    assert (tmp_path / name).is_file()
 
 
 def test_into_names_the_folder_and_makes_it(runner: CliRunner, tmp_path: Path) -> None:
@@ -112,3 +148,10 @@ def test_a_copy_is_a_model_to_be_written_up(tmp_path: Path) -> None:
     done = run("writeup", "two_tank_cascade.toml", cwd=tmp_path)
     assert done.returncode == 0
     assert (tmp_path / "out" / "two_tank_cascade.tex").is_file()
+
+
+def test_a_copy_of_a_derivation_is_checked(tmp_path: Path) -> None:
+    assert run("starter", "ladder_on_paper", cwd=tmp_path).returncode == 0
+    done = run("check", "ladder_on_paper.toml", cwd=tmp_path)
+    assert done.returncode == 0
+    assert "all 13 lines hold" in done.stdout

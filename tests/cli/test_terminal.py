@@ -170,3 +170,6 @@ def test_a_starter_says_what_to_do_next(tmp_path: Path) -> None:
     assert terminal.finish() == 0
     assert terminal.lines[0] == "my models/rlc_pair.toml"
     assert terminal.lines[-2] == "Write it up with: closedform writeup 'my models/rlc_pair.toml'"
+    terminal = Terminal("starter", "coupled_tables", cwd=tmp_path)
+    assert terminal.finish() == 0
+    assert terminal.lines[-2] == "Check it with: closedform check coupled_tables.tex"
