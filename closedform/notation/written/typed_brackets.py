@@ -113,7 +113,9 @@ class Brackets:
             raise StrayError(
                 sign.start, self.signs.text[sign.start : end], "nothing is in brackets"
             )
-        if shape == "group":
+        if close == k + 2 and self.signs.all[k + 1].kind == "DERIVATIVE":
+            yield token("DERIVATIVE", self.signs.all[k + 1].value, sign.start, end)
+        elif shape == "group":
             yield token("OPEN", sign.value, sign.start, sign.end)
             yield from self.tokens(k + 1, close)
             yield token("CLOSE", self.signs.all[close].value, end - 1, end)
@@ -205,6 +207,13 @@ class Brackets:
             )
         if k - 1 not in self.columns:
             yield token("POSTFIX", "transpose", sign.start, sign.end)
+        return k + 1
+
+    def _postfix(self, k: int, stop: int) -> Steps:  # noqa: ARG002  each step has both bounds
+        """Yield a sign behind an operand, but for a row that was already made a column."""
+        sign = self.signs.all[k]
+        if sign.value != "transpose" or k - 1 not in self.columns:
+            yield token("POSTFIX", sign.value, sign.start, sign.end)
         return k + 1
 
     def _cases(self, begin: int, stop: int) -> Iterator[Token]:

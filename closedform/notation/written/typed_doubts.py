@@ -54,6 +54,8 @@ class Doubtful(Brackets):
                 yield token("POSTFIX", "transpose", sign.start, self.signs.all[end - 1].end)
             return end
         yield token("POWER", "^", sign.start, sign.end)
+        if end == k + 1:
+            return end
         words = {self.signs.all[m].word for m in range(k + 1, end)}
         tail = self._tail(k, end, stop)
         if tail > end:
@@ -122,9 +124,7 @@ class Doubtful(Brackets):
         sign, after = self.signs.all[k], k + 1
         bracket = self.signs.kind(after, stop) == "OPEN"
         if sign.value == "exp" and bracket:
-            yield token("EULER", EULER, sign.start, sign.end)
-            yield token("POWER", "^", sign.end, sign.end)
-            yield from self.tokens(after, self.signs.pairs[after] + 1)
+            yield from self._exponential(k)
             return self.signs.pairs[after] + 1
         if bracket and sign.value in ("step", "delta") and self._is_letter_of(k, after):
             name = Symbol(self._spelled(k))
@@ -143,6 +143,19 @@ class Doubtful(Brackets):
                 return close + 1
             return after
         return (yield from self._loose_argument(k, after, stop))
+
+    def _exponential(self, k: int) -> Iterator[Token]:
+        """Yield exp(..) as a power of e, in a group: an exponent behind it is that of the whole."""
+        sign, end = self.signs.all[k], self.signs.pairs[k + 1] + 1
+        raised = self.signs.kind(end, len(self.signs.all)) == "POWER"
+        if raised:
+            yield token("GROUP_OPEN", "{", sign.start, sign.start)
+        yield token("EULER", EULER, sign.start, sign.end)
+        yield token("POWER", "^", sign.end, sign.end)
+        yield from self.tokens(k + 1, end)
+        if raised:
+            last = self.signs.all[end - 1].end
+            yield token("GROUP_CLOSE", "}", last, last)
 
     def _is_letter_of(self, k: int, after: int) -> bool:
         """Whether a letter for the unit step or impulse stands before something without time."""

@@ -39,10 +39,11 @@ def listing_commas(text: str) -> Iterator[int]:
             word = re.search(r"[A-Za-z0-9]+$", text[:at])
             opened.append((at, [], sign != "(" or bool(word and word[0] in MANY)))
         elif sign in ")]}" and opened:
-            _, commas, listed = opened.pop()
+            start, commas, listed = opened.pop()
             turned = re.match(r"\s*(?:\^\s*\{?T|'|ᵀ)", text[at + 1 : at + 6])
-            spaced = any(text[c + 1 : c + 2] != "" and text[c + 1].isspace() for c in commas)
-            if listed or turned or spaced or len(commas) > 1:
+            loose = any(not re.fullmatch("[0-9],[0-9]", text[c - 1 : c + 2]) for c in commas)
+            chained = re.search("[0-9],[0-9]+,[0-9]", text[start:at])
+            if listed or turned or loose or chained:
                 yield from commas
         elif sign == "," and opened:
             opened[-1][1].append(at)

@@ -119,9 +119,9 @@ class Signs:
         elif kind == "FUNCTION":
             k = self._exponents(k + 1, stop)
             k = self.pairs[k] + 1 if self.kind(k, stop) == "OPEN" else self.argument_end(k, stop)
-        elif k in self.pairs:
+        elif self.pairs.get(k, -1) > k:
             k = self.pairs[k] + 1
-        else:
+        elif k < stop:
             called = kind == "ATOM" and self.is_called(k, stop)
             k += 1
             while self.kind(k, stop) == "PRIMES":
@@ -161,11 +161,17 @@ class Signs:
         """Return where an exponent ends that begins at `k`: signs, an operand, its own exponent."""
         while self.kind(k, stop) in SIGNED:
             k += 1
+        if not self.begins_factor(k, stop):
+            return k
         if k in self.pairs:
             return self._exponents(self.pairs[k] + 1, stop)
         if self.kind(k, stop) == "FUNCTION":
             return self.factor_end(k, stop)
-        word = self.all[k].word if k < stop else -1
+        if self.is_called(k, stop):
+            while self.kind(k, stop) != "OPEN":
+                k += 1
+            return self._exponents(self.pairs[k] + 1, stop)
+        word = self.all[k].word
         k += 1
         while word >= 0 and k < stop and self.all[k].word == word:
             k += 1

@@ -49,7 +49,7 @@ def read_typed(text: str, declared: Declared = NOBODY, *, place: Place = NOWHERE
         scanner = Scanner(text, declared)
         lexemes = scanner.lexemes()
         if not lexemes:
-            raise UnexpectedPartError(place, "", "a formula")
+            raise UnexpectedPartError(place_of(text, 0, place), "", "a formula")
         statements, doubts = _read(text, lexemes, declared, frozenset())
         doubts += [_comma(text, *bounds) for bounds in scanner.commas]
     except StrayError as error:

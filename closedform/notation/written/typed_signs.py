@@ -22,7 +22,7 @@ __all__ = [
 
 OPERATORS = {
     **dict.fromkeys(("+/-", "+-", "±", "(+/-)", "(+-)"), "PLUS_MINUS"),
-    **dict.fromkeys(("-/+", "∓"), "MINUS_PLUS"),
+    **dict.fromkeys(("-/+", "-+", "∓"), "MINUS_PLUS"),
     **dict.fromkeys(("**", "^"), "POWER"),
     **dict.fromkeys(("*", "·", "⋅", "×", "∗", "∙", "•"), "TIMES"),
     **dict.fromkeys(("/", "÷", "∕", "⁄"), "OVER"),

@@ -27,6 +27,8 @@ from closedform.notation.written.typed_weaving import Weaver
 
 __all__ = ["statements_of"]
 
+COMPACT = re.compile(r"(?<=[NVAW])(?=[smh](?![A-Za-z]))")
+"""Between two units that are typed without a gap: Ns, Vs, Nm, Wh."""
 COMPARING = frozenset("<≤>≥→")
 TENDING = frozenset({"tends", "goes", "approaches"})
 
@@ -98,12 +100,10 @@ class _Statements(Parting):
             else:
                 conditions.append(found)
         if chunk.start == chunk.stop:
-            first = self.signs.all[chunk.start]
-            raise StrayError(
-                first.start,
-                self.signs.inside(chunk.start, chunk.start + 1),
-                "a condition stands behind the formula that it is for",
-            )
+            first = self.signs.all[min(chunk.start, len(self.signs.all) - 1)]
+            found = self.signs.text[first.start : first.end]
+            why = "a condition stands behind the formula that it is for"
+            raise StrayError(first.start, found, why)
         members, unit = self._without_units(chunk.start, chunk.stop)
         self._refuse_prose(chunk.start, chunk.stop)
         tokens: list[Token] = []
@@ -175,7 +175,7 @@ class _Statements(Parting):
         text = "".join(SUPERSCRIPTS.get(c, c) for c in text).strip("[]").replace("**", "^")
         text = text.replace("(", "").replace(")", "") if "^(" in text else text
         decimal = isinstance(value, Literal) and value.is_decimal
-        if not is_unit(text) or text in ("°", "deg", "%", self.declared.time):
+        if not is_unit(COMPACT.sub(" ", text)) or text in ("°", "deg", "%", self.declared.time):
             return last, ""
         if alone and not decimal:
             return last, ""
