@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, fields
+from itertools import islice
 
 from lark import Token
 
@@ -15,6 +16,7 @@ from closedform.notation.written.statements import statements_of
 from closedform.notation.written.tree import (
     EULER,
     Ambiguity,
+    Constant,
     Literal,
     Reading,
     Statement,
@@ -25,8 +27,14 @@ from closedform.notation.written.written_errors import StopError
 
 __all__ = ["Choice", "found_choices", "reading_of"]
 
+LARGEST = 5_000
+"""Tokens of a text whose other readings are worked out."""
 MOST = 8
 """Places of one text for which the other reading is worked out."""
+
+
+Insertions = list[tuple[int, Token]]
+"""Tokens to be set before indices."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -58,6 +66,8 @@ def reading_of(
         if other == statements or other in others:
             continue
         first, second = _difference(statements, other)
+        if choice.decided_by and first == second:
+            first, second = f"the declared {first}", f"the number {second}"
         place = text[choice.start : choice.end]
         ambiguities.append(Ambiguity(place, first, second, choice.decided_by))
         others.append(other)
@@ -111,30 +121,43 @@ def found_choices(
     `given` are those that were found on the way, `logs` where there is a logarithm without
     base.  A slash whose likelier reading takes two factors below gets a group in `tokens`.
     """
-    _grouped(tokens, names)
     partners = pairs(tokens, "")
-    found = [choice for pair in given if (choice := _replaced(tokens, pair))]
+    _inserted(tokens, _grouped(tokens, partners, names) + _arguments(tokens, partners, names))
+    if len(tokens) > LARGEST:
+        return []
+    return list(islice(_choices(tokens, names, given, logs), MOST))
+
+
+def _choices(
+    tokens: list[Token],
+    names: Names,
+    given: Sequence[tuple[tuple[Token, ...], tuple[Token, ...]]],
+    logs: Sequence[tuple[int, int]],
+) -> Iterator[Choice]:
+    partners = pairs(tokens, "")
+    for pair in given:
+        if choice := _replaced(tokens, pair):
+            yield choice
     for start, end in logs:
         for index, part in enumerate(tokens):
             if part.type == "FUNCTION" and bounds(part) == (start, end):
                 new = token("FUNCTION", "log10", start, end)
-                found.append(Choice((*tokens[:index], new, *tokens[index + 1 :]), start, end))
+                yield Choice((*tokens[:index], new, *tokens[index + 1 :]), start, end)
     for index, part in enumerate(tokens):
         match part.type:
             case "FUNCTION":
-                found += _argument(tokens, index, partners, names)
+                yield from _argument(tokens, index, partners, names)
             case "OVER":
-                found += _division(tokens, index, partners)
+                yield from _division(tokens, index, partners)
             case "EULER":
-                found += _bare_exponent(tokens, index)
+                yield from _bare_exponent(tokens, index)
             case "FRACTION":
-                found += _mixed(tokens, index, partners)
+                yield from _mixed(tokens, index, partners)
             case "ATOM" if part.value == Symbol("e") and names.find("e") is not None:
                 other = (*tokens[:index], _like(part, "ATOM", EULER), *tokens[index + 1 :])
-                found.append(Choice(other, *bounds(part), decided_by="e"))
+                yield Choice(other, *bounds(part), decided_by="e")
             case "ATOM" if isinstance(part.value, Symbol) and part.value.name in "smVANWJKFHC":
-                found += _careless_unit(tokens, index)
-    return found
+                yield from _careless_unit(tokens, index)
 
 
 def _replaced(
@@ -183,6 +206,10 @@ def _argument(tokens: list[Token], at: int, partners: dict[int, int], names: Nam
     first = at + 1
     if first < len(tokens) and tokens[first].type == "POWER":
         first = partners.get(first + 1, first + 1) + 1
+    if first < len(tokens) and tokens[first].type == "GROUP_OPEN" and tokens[first].value == "set":
+        close = partners[first]
+        other = (*tokens[:first], *tokens[first + 1 : close], *tokens[close + 1 :])
+        return [Choice(other, *bounds(tokens[at], tokens[close]))]
     if first >= len(tokens) or tokens[first].type not in PLAIN:
         return []
     found, end = [], first
@@ -194,6 +221,9 @@ def _argument(tokens: list[Token], at: int, partners: dict[int, int], names: Nam
         end = _operand(tokens, end, partners)
     if end >= len(tokens):
         return found
+    if tokens[end].type == "ARGUMENT_END":
+        other = (*tokens[:end], *tokens[end + 1 :])
+        return [*found, Choice(other, *bounds(tokens[at], tokens[partners[end + 1]]))]
     behind = end
     match tokens[end].type:
         case "EULER":
@@ -219,6 +249,71 @@ def _argument(tokens: list[Token], at: int, partners: dict[int, int], names: Nam
     return found
 
 
+def _arguments(tokens: list[Token], partners: dict[int, int], names: Names) -> Insertions:
+    """Return ends of arguments without brackets, where the time tells.
+
+    In cos t (1 + t) the bracket is behind the argument, which has its time already; in
+    sin 2 pi * 50 t and in sin pi/4 the argument goes on behind the sign.
+    """
+    time = Symbol(names.time)
+    new: Insertions = []
+    for at, part in enumerate(tokens):
+        first = at + 1
+        if part.type != "FUNCTION" or first >= len(tokens):
+            continue
+        if tokens[first].type == "POWER":
+            first = partners.get(first + 1, first + 1) + 1
+        end, timed, closed = first, False, False
+        while end < len(tokens) and (
+            tokens[end].type in PLAIN or (tokens[end].type == "OPEN" and end > first)
+        ):
+            if tokens[end].type == "OPEN" and timed:
+                new.append((end, token("ARGUMENT_END", "set", *bounds(tokens[end]))))
+                closed = True
+                break
+            behind = _operand(tokens, end, partners)
+            timed = timed or any(t.value == time for t in tokens[end:behind])
+            end = behind
+        sign = tokens[end].type if first < end < len(tokens) and not closed else ""
+        if sign not in ("TIMES", "OVER") or timed:
+            continue
+        behind = end + 1
+        while behind < len(tokens) and tokens[behind].type in PLAIN:
+            behind = _operand(tokens, behind, partners)
+            if sign == "OVER":
+                break
+        more = any(t.value == time for t in tokens[end:behind])
+        number = all(
+            t.type not in ("ATOM", "CALL") or isinstance(t.value, Constant)
+            for t in tokens[first:behind]
+        )
+        if behind > end + 1 and ((sign == "TIMES" and more) or (sign == "OVER" and number)):
+            new += _around(tokens, first, behind)
+    return new
+
+
+def _around(tokens: Sequence[Token], first: int, behind: int) -> Insertions:
+    """Return a group round tokens, marked as set by a choice."""
+    start, end = bounds(tokens[first], tokens[behind - 1])
+    return [
+        (first, token("GROUP_OPEN", "set", start, start)),
+        (behind, token("GROUP_CLOSE", "", end, end)),
+    ]
+
+
+def _inserted(tokens: list[Token], new: Insertions) -> None:
+    """Insert tokens before indices; closing ones stand before opening ones."""
+    order = sorted(new, key=lambda one: (one[0], one[1].type != "GROUP_CLOSE"), reverse=True)
+    for_index: dict[int, list[Token]] = {}
+    for index, part in reversed(order):
+        for_index.setdefault(index, []).append(part)
+    tokens[:] = [
+        part
+        for index in range(len(tokens) + 1)
+        for part in (*for_index.get(index, ()), *tokens[index : index + 1])
+    ]
+
+
 def _denominator(tokens: Sequence[Token], at: int, partners: dict[int, int]) -> tuple[int, int]:
     """Return the indices behind the first and behind the last factor that follow a slash."""
     first = _operand(tokens, at + 1, partners)
@@ -228,25 +323,28 @@ def _denominator(tokens: Sequence[Token], at: int, partners: dict[int, int]) -> 
     return first, last
 
 
-def _grouped(tokens: list[Token], names: Names) -> None:
-    """Set a group round RC in an exponent -t/RC: the time is above, and none below."""
+def _grouped(tokens: list[Token], partners: dict[int, int], names: Names) -> Insertions:
+    """Return groups round RC in an exponent -t/RC: the time is above, and none below."""
     time = Symbol(names.time)
-    at = 0
-    while at < len(tokens):
-        if tokens[at].type == "OVER" and at + 1 < len(tokens) and tokens[at + 1].type in PLAIN:
-            partners = pairs(tokens, "")
-            first, last = _denominator(tokens, at, partners)
-            before = at - 1
-            while before >= 0 and tokens[before].type not in ("GROUP_OPEN", "OPEN"):
-                before -= 1
-            timed = any(t.value == time for t in tokens[before + 1 : at])
-            inside = before >= 1 and tokens[before - 1].type in ("POWER", "FUNCTION")
-            below = any(t.value == time for t in tokens[at + 1 : last])
-            if last > first and timed and inside and not below:
-                group = _group(tokens[at + 1 : last])
-                group[0].value = "set"
-                tokens[at + 1 : last] = group
-        at += 1
+    new: Insertions = []
+    opened = [-1]
+    times = [0]
+    for at, part in enumerate(tokens):
+        times.append(times[-1] + (part.value == time))
+        if part.type.endswith("OPEN"):
+            opened.append(at)
+        elif part.type.endswith("CLOSE"):
+            opened.pop()
+        before = opened[-1]
+        if part.type != "OVER" or before < 1 or at + 1 == len(tokens):
+            continue
+        inside = tokens[before - 1].type in ("POWER", "FUNCTION")
+        if not inside or tokens[at + 1].type not in PLAIN or times[at] == times[before]:
+            continue
+        first, last = _denominator(tokens, at, partners)
+        if last > first and all(t.value != time for t in tokens[at + 1 : last]):
+            new += _around(tokens, at + 1, last)
+    return new
 
 
 def _division(tokens: list[Token], at: int, partners: dict[int, int]) -> list[Choice]:

@@ -9,7 +9,7 @@ from lark import Token
 from closedform.notation.written.grammar import token
 from closedform.notation.written.names import STEPS, Names
 from closedform.notation.written.pairs import bounds, pairs
-from closedform.notation.written.tree import Constant, Jet, Literal, Symbol
+from closedform.notation.written.tree import IMAGINARY, Constant, Jet, Literal, Symbol
 
 __all__ = ["called", "symbol_name"]
 
@@ -103,13 +103,15 @@ def _head(
     declared = names.find(value.name, bold=value.bold)
     if declared is not None:
         matrix = declared in names.declared.matrices or value.bold
-        return call if exactly and (defines or matrix) else None
+        instant = exactly or (only is not None and only.type == "NUMBER" and matrix)
+        return call if instant and (defines or matrix) else None
     if value.name == "delta":
         return token("FUNCTION", "delta", *place)
     if value.name in STEPS and timed and not defines:
         return token("FUNCTION", "step", *place)
     if only is None:
         letter = value.name.split("_")[0]
+        timed = timed or any(t.value in (IMAGINARY, Symbol("s")) for t in inside)
         return call if timed and letter in FUNCTIONS and bracket.value == "(" else None
     if only.type == "ATOM" and isinstance(only.value, Symbol):
         single = exactly or only.value.name in ARGUMENTS or only.value.bold

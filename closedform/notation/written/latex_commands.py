@@ -104,6 +104,9 @@ class LatexCommands(LatexParts):
         before = next((t for t in reversed(out) if t.type != "SPACE"), None)
         if before is None or before.type not in OPERAND_ENDS:
             return at
+        apart = out[-1].type == "SPACE"
+        if self.raws[at].text in ("Omega", "mu") and not (apart and before.type == "NUMBER"):
+            return at
         found, stop = "", at
         index = at
         while index < end:
@@ -134,7 +137,7 @@ class LatexCommands(LatexParts):
             ends = ends or following in (",", ";", ".", "=", "quad", "qquad", "approx", " ", ")")
             if (word and self.names.find(word)) or not (ends or not word):
                 return at
-        if single and (following in ("(", "left") or (found in "dT" and following == "{")):
+        if single and found == "H" and following in ("(", "left"):
             return at
         if found == "d" and stop < end and self.is_letter(stop):
             return at
@@ -208,6 +211,8 @@ class LatexCommands(LatexParts):
         elif name in BARS or name == "|":
             kind, side = ("NORM", "") if name == "|" else BARS[name]
             out.append(token(kind, side, *bounds))
+        elif name == "in":
+            out.append(token("IN", "", *bounds))
         elif name == "infty":
             out.append(token("ATOM", INFINITY, *bounds))
         elif name == "colon":

@@ -8,7 +8,7 @@ from typing import NoReturn
 from lark import Token
 
 from closedform.notation.written.grammar import token
-from closedform.notation.written.latex_lexer import Raw, matched
+from closedform.notation.written.latex_lexer import MOST_NESTED, Raw, matched
 from closedform.notation.written.latex_numbers import number_at
 from closedform.notation.written.latex_scripts import Scripts, flattened, mark_of
 from closedform.notation.written.macros import (
@@ -53,6 +53,8 @@ OPERAND_ENDS = frozenset(
         "DIFFERENTIAL",
     ]
 )
+LONGEST_RUN = 60
+"""Letters side by side that can be one name."""
 OPENING = {"(": "(", "[": "[", "lbrace": "{", "{": "{", "lbrack": "[", "lparen": "("}
 CLOSING = {")": "(", "]": "[", "rbrace": "{", "}": "{", "rbrack": "[", "rparen": "("}
 
@@ -75,6 +77,7 @@ class LatexParts:
     def __init__(self, text: str, raws: list[Raw], names: Names) -> None:
         self.text, self.raws, self.names = text, raws, names
         self.partners = matched(raws)
+        self.depth = 0
         self.logs: list[tuple[int, int]] = []
         self.choices: list[tuple[tuple[Token, ...], tuple[Token, ...]]] = []
 
@@ -111,7 +114,11 @@ class LatexParts:
         if self.raws[at].kind == "{":
             close = self.partners[at]
             return at + 1, close, close + 1
+        self.depth += 1
+        if self.depth > MOST_NESTED:
+            raise StopError(WrittenDepthError, of.start, of.end, of.text, MOST_NESTED)
         behind = self.behind(at, end)
+        self.depth -= 1
         return at, behind, behind
 
     def behind(self, at: int, end: int) -> int:
@@ -144,6 +151,9 @@ class LatexParts:
                 if raw.text != "over":
                     self.stop(raw, "write it as a fraction or in words")
                 if self.level(at, index):
+                    rest = [k for k in range(index + 1, end) if self.raws[k].text == "over"]
+                    if any(self.level(index + 1, k) for k in rest[:1]):
+                        self.stop(raw, "there are two in one group; write them as fractions")
                     return self.fraction(raw, (at, index), (index + 1, end), font)
         while at < end:
             at = self.step(at, end, font, out)
@@ -229,7 +239,7 @@ class LatexParts:
         """Add the longest name that a run of letters begins with."""
         raws, stop = self.raws, at
         while (
-            stop < end
+            stop < min(end, at + LONGEST_RUN)
             and raws[stop].kind in ("letter", "digit")
             and (stop == at or raws[stop].start == raws[stop - 1].end)
         ):
@@ -400,7 +410,7 @@ class LatexParts:
             return self.function(at, end, name.spelling, (name.start, name.end), out)
         if name.spelling == "Delta" and known("Delta") is None and at < end:
             following, behind = self.nucleus(at, end) if self.is_letter(at) else (None, at)
-            if following is not None:
+            if following is not None and not following.spelling.startswith("Delta"):
                 joined = Name("Delta" + following.spelling, name.start, following.end)
                 return self.named(joined, behind, end, out)
         scripts, at = self.scripts(at, end)
@@ -434,7 +444,7 @@ class LatexParts:
             mark = "done"
         value = self.names.operand(spelling, bold=name.bold, order=order)
         if isinstance(value, Symbol) and order == 0:
-            value = self.names.identity(spelling) or value
+            value = self.names.identity(spelling, bold=name.bold) or value
         out.append(token("ATOM", value, *bounds))
         if mark and mark != "done":
             self.postfix(mark, scripts, out)
@@ -450,6 +460,8 @@ class LatexParts:
     def power(self, scripts: Scripts, out: list[Token]) -> None:
         """Add what stands above as an exponent."""
         first, last = scripts.above[0], scripts.above[-1]
+        if not scripts.bare:
+            last = self.raws[scripts.above_at[1]]
         out.append(token("POWER", "bare" if scripts.bare else "", first.start, first.start))
         out.append(token("GROUP_OPEN", "", first.start, first.start))
         out += self.sequence(*scripts.above_at)
@@ -476,8 +488,9 @@ class LatexParts:
                 self.stop(raw, "a number or a matrix has no subscript")
             self.evaluated(scripts, out)
             return
-        listed = last.type == "MATRIX_CLOSE" or any(t.type == "COMMA" for t in out)
-        mark = mark_of(scripts.above, transposed=self.names.find("T") is None or listed)
+        italic = self.names.find("T") is None or last.type == "MATRIX_CLOSE"
+        italic = italic or any(t.type == "COMMA" for t in out[-200:])
+        mark = mark_of(scripts.above, transposed=italic)
         if last.type == "NUMBER" and mark in ("plus", "minus"):
             return
         if last.type == "NUMBER" and mark == "transpose":
@@ -495,8 +508,11 @@ class LatexParts:
         """Add a bar with the point below it, and one above it if there is."""
         kind = "EVALUATED_BOTH" if scripts.above else "EVALUATED"
         out.append(token(kind, self.names.time, scripts.start, scripts.end))
-        for low, high in (scripts.below_at, scripts.above_at)[: 1 + bool(scripts.above)]:
-            self.grouped(low, high, out)
+        self.grouped(*scripts.below_at, out)
+        if scripts.above:
+            low, high = scripts.above_at
+            signs = [k for k in range(low, high) if self.raws[k].text == "="]
+            self.grouped(signs[0] + 1 if signs else low, high, out)
 
     def grouped(self, low: int, high: int, out: list[Token], font: str = "") -> None:
         """Add the tokens between two indices as a group."""

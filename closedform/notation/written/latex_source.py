@@ -26,9 +26,8 @@ class LatexSource(LatexCommands):
         raw, close = self.raws[at], self.partners[at]
         if raw.text in MATRICES:
             cells = [[self.sequence(*cell) for cell in row] for row in self.rows(at + 1, close)]
-            system = [[cell for cell in row] for row in cells]
             if any(_equates(cell) for row in cells for cell in row):
-                out += self.lines(system, close)
+                out += self.lines(cells, close)
             else:
                 out += self.matrix(at, cells)
         elif raw.text in CASES:
@@ -121,7 +120,7 @@ class LatexSource(LatexCommands):
     def pieces(self, at: int, end: int) -> list[Token]:
         """Return the tokens of a piecewise value, or nothing if the lines are statements."""
         rows = [[self.sequence(*cell) for cell in row] for row in self.rows(at, end)]
-        if any(_equates(row[0]) for row in rows):
+        if any(_equates(row[0]) or _goes_on(row[1:2]) for row in rows):
             return []
         parted = [_parted(row) for row in rows]
         if not any(condition for _, condition in parted):
@@ -151,6 +150,12 @@ def _equates(tokens: list[Token]) -> bool:
         if depth == 0 and part.type == "REL" and part.value in ("=", "≈"):
             return True
     return False
+
+
+def _goes_on(cells: list[list[Token]]) -> bool:
+    """Tell whether a cell goes on with an equation that the cell before it began."""
+    first = next((part for cell in cells for part in cell if part.type != "SPACE"), None)
+    return first is not None and first.type == "REL" and first.value in ("=", "≈")
 
 
 def _width(row: list[list[Token]]) -> int:

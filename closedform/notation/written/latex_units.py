@@ -87,7 +87,7 @@ _ALONE = [
     "hours",
     "minutes",
     "seconds",
-    "people",
+    "years year",
 ]
 _PREFIXES = (
     "",

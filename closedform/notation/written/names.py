@@ -118,9 +118,14 @@ class Names:
         """Return e, i or pi if that is what a name means that is not declared."""
         return CONSTANTS.get(spelling) if self.find(spelling) is None else None
 
-    def identity(self, spelling: str) -> Identity | None:
-        """Return the unit matrix of the names I, I_2 and I_n, if they are not declared."""
-        form = re.fullmatch(r"I(?:_([2-9]|[1-9][0-9]|n|N))?", spelling)
+    def identity(self, spelling: str, *, bold: bool = False) -> Identity | None:
+        """Return the unit matrix of the names I, I_2 and I_n, if they are not declared.
+
+        A bold E is one too.
+        """
+        form = re.fullmatch(r"[IE](?:_([2-9]|[1-9][0-9]|n|N))?", spelling)
+        if spelling.startswith("E") and not bold:
+            return None
         if form is None or self.find(spelling) is not None:
             return None
         return Identity(int(form[1])) if form[1] and form[1].isdecimal() else Identity()

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 from lark import Token
 
-from closedform.notation.written.written_errors import StopError, UnbalancedError
+from closedform.notation.written.written_errors import StopError, UnbalancedError, WrittenDepthError
 
 __all__ = ["OPERAND_ENDS", "OPERAND_STARTS", "bounds", "pairs"]
 
@@ -22,9 +22,13 @@ OPERAND_STARTS = frozenset(
 """Types of tokens with which an entry of a row can begin."""
 
 
+DEEPEST = 100
+"""Brackets inside each other."""
+
+
 def bounds(first: Token, last: Token | None = None) -> tuple[int, int]:
     """Return where tokens begin and end in the text."""
-    return first.start_pos or 0, (last or first).end_pos or 0
+    return first.start_pos or 0, (first if last is None else last).end_pos or 0
 
 
 def pairs(tokens: Sequence[Token], text: str) -> dict[int, int]:
@@ -37,6 +41,8 @@ def pairs(tokens: Sequence[Token], text: str) -> dict[int, int]:
     for index, part in enumerate(tokens):
         if part.type.endswith("OPEN"):
             opened.append(index)
+            if len(opened) > DEEPEST:
+                raise StopError(WrittenDepthError, *bounds(part), _shown(part, text), DEEPEST)
         elif part.type.endswith("CLOSE"):
             first = tokens[opened[-1]] if opened else None
             if first is None or first.type[:-4] != part.type[:-5]:

@@ -12,13 +12,14 @@ from closedform.notation.written.grammar import token
 from closedform.notation.written.latex_numbers import literal, scaled
 from closedform.notation.written.names import Names
 from closedform.notation.written.pairs import OPERAND_ENDS, OPERAND_STARTS, bounds, pairs
-from closedform.notation.written.tree import Jet, Literal, Symbol
+from closedform.notation.written.tree import Identity, Jet, Literal, Symbol
 from closedform.notation.written.written_errors import StopError, UnusableNotationError
 
 __all__ = ["Choice", "settled"]
 
 Choice = tuple[tuple[Token, ...], tuple[Token, ...]]
 """Tokens as they are read, and as they may also be read."""
+MOST_INTEGRALS = 50
 SEVERAL = frozenset({"diag", "max", "min", "atan2"})
 TEN = Literal(Fraction(10))
 
@@ -36,12 +37,12 @@ def settled(tokens: Sequence[Token], text: str, names: Names, choices: list[Choi
         elif part.type != "SPACE" or part.value > 0:
             found.append(part)
     found = _degrees(_powers_of_ten(found))
-    found = _barred(found)
+    found = _barred(_intervals(_noted(found, text)))
     found = _decimals(found, text)
     found = _columns(found, choices)
-    found = _leibniz(found, names)
+    found = _leibniz(_transforms(found), names)
     found = _integrals(found, names)
-    found = called(found, names, choices)
+    found = called(_identities(found, names), names, choices)
     _beside(found, text)
     return found
 
@@ -69,6 +70,75 @@ def _powers_of_ten(tokens: list[Token]) -> list[Token]:
         new[plain[place]] = token("NUMBER", value, value.start, value.end)
         gone |= set(range(plain[place] + 1, plain[place + size - 1] + 1))
     return [part for k, part in enumerate(new) if k not in gone]
+
+
+def _intervals(tokens: list[Token]) -> list[Token]:
+    """Return tokens where t in [0, 2) compares, and an eigenvalue in {..} is one of them."""
+    out: list[Token] = []
+    at = 0
+    while at < len(tokens):
+        part = tokens[at]
+        if part.type != "IN":
+            out.append(part)
+            at += 1
+            continue
+        close, comma, depth = at + 1, 0, 0
+        while close < len(tokens):
+            kind = tokens[close].type
+            depth += kind.endswith("OPEN") - kind.endswith("CLOSE")
+            if kind == "COMMA" and depth == 1:
+                comma = close
+            if depth == 0:
+                break
+            close += 1
+        opening = tokens[at + 1] if at + 1 < len(tokens) else None
+        if opening is None or opening.type != "OPEN" or close == len(tokens) or not out:
+            raise StopError(
+                UnusableNotationError, *bounds(part), r"\in", "write a comparison, as 0\le t<2"
+            )
+        if opening.value == "{":
+            out.append(token("REL", "=", *bounds(part)))
+            at += 1
+        elif not comma or out[-1].type != "ATOM":
+            raise StopError(
+                UnusableNotationError, *bounds(part), r"\in", "write a comparison, as 0\le t<2"
+            )
+        else:
+            name = out.pop()
+            first = token("REL", "≤" if opening.value == "[" else "<", *bounds(opening))
+            last = token("REL", "≤" if tokens[close].value == "[" else "<", *bounds(tokens[close]))
+            out += [*tokens[at + 2 : comma], first, name, last, *tokens[comma + 1 : close]]
+            at = close + 1
+    return out
+
+
+def _noted(tokens: list[Token], text: str) -> list[Token]:
+    """Return tokens where brackets with words in them are notes."""
+    out: list[Token] = []
+    opened: list[int] = []
+    for part in tokens:
+        out.append(part)
+        if part.type == "OPEN":
+            opened.append(len(out) - 1)
+        elif part.type == "CLOSE" and opened:
+            first = opened.pop()
+            if not opened and any(inner.type == "TEXT" for inner in out[first:]):
+                place = bounds(out[first], part)
+                out[first:] = [token("TEXT", text[slice(*place)], *place)]
+    return out
+
+
+def _transforms(tokens: list[Token]) -> list[Token]:
+    """Return tokens where a transform has no second bracket that says its variable."""
+    partners = pairs(tokens, "")
+    gone: set[int] = set()
+    for at, part in enumerate(tokens):
+        if part.type == "TRANSFORM" and at + 1 in partners:
+            first = partners[at + 1] + 1
+            kinds = [one.type for one in tokens[first : first + 3]]
+            if kinds == ["OPEN", "ATOM", "CLOSE"] and symbol_name(tokens[first + 1]) in ("s", "t"):
+                gone |= {first, first + 1, first + 2}
+    return [part for at, part in enumerate(tokens) if at not in gone]
 
 
 def _degrees(tokens: list[Token]) -> list[Token]:
@@ -163,8 +233,9 @@ def _lists(tokens: list[Token], opening: int, closing: int, commas: int) -> bool
     if before is not None and before.type == "FUNCTION":
         return before.value in SEVERAL
     whole = closing - opening == 4
-    after = tokens[closing + 1] if closing + 1 < len(tokens) else None
-    return whole and after is not None and after.type == "POSTFIX" and after.value == "transpose"
+    after = tokens[closing + 1].type if closing + 1 < len(tokens) else ""
+    called_ = before is not None and before.type in (*OPERAND_ENDS, "FUNCTION", "CALL", "POWER")
+    return whole and not called_ and after != "POWER"
 
 
 def _columns(tokens: list[Token], choices: list[Choice]) -> list[Token]:
@@ -274,6 +345,14 @@ def _derivative(
 def _integrals(tokens: list[Token], names: Names) -> list[Token]:
     """Return tokens where the differential that ends an integral is one token."""
     out = list(tokens)
+    integrals = [part for part in tokens if part.type.startswith("INTEGRAL")]
+    if len(integrals) > MOST_INTEGRALS:
+        raise StopError(
+            UnusableNotationError,
+            *bounds(integrals[MOST_INTEGRALS]),
+            "the integral",
+            f"there are more than {MOST_INTEGRALS} of them in one text; part it",
+        )
     for at in range(len(tokens) - 1, -1, -1):
         if tokens[at].type not in ("INTEGRAL", "INTEGRAL_BOUNDS"):
             continue
@@ -311,6 +390,28 @@ _ENDS = frozenset(
     "CLOSE GROUP_CLOSE BAR_CLOSE NORM_CLOSE MATRIX_CLOSE CASES_CLOSE PLUS MINUS REL COMMA SEMI "
     "ROW_END PERIOD SPACE TEXT WORD IMPLIES COLUMN ROW UNIT".split()
 )
+
+
+def _identities(tokens: list[Token], names: Names) -> list[Token]:
+    """Return tokens where E behind an eigenvalue is the unit matrix, if there is a matrix."""
+    matrices = any(
+        part.type == "MATRIX_OPEN"
+        or (
+            isinstance(part.value, Symbol)
+            and (part.value.bold or part.value.name in names.declared.matrices)
+        )
+        for part in tokens
+    )
+    if not matrices or names.find("E") is not None:
+        return tokens
+    return [
+        token("ATOM", Identity(), *bounds(part))
+        if part.value == Symbol("E")
+        and before.type == "ATOM"
+        and symbol_name(before).split("_")[0] in ("lambda", "lamda", "s")
+        else part
+        for before, part in zip([*tokens[:1], *tokens], tokens, strict=False)
+    ]
 
 
 def _beside(tokens: list[Token], text: str) -> None:

@@ -18,7 +18,7 @@ from closedform.notation.written.written_errors import (
 
 __all__ = ["LONGEST", "read_latex"]
 
-LONGEST = 50_000
+LONGEST = 30_000
 """Characters of one text."""
 
 NOWHERE = Place()
