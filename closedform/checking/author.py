@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
 
 from closedform.checking.claim import Claim
-from closedform.notation.written.tree import Symbol, Written, changed
+from closedform.notation.written.tree import Jet, Symbol, Written, changed
 
 __all__ = ["Author", "Entry"]
 
@@ -48,6 +48,8 @@ class Author:
     definition_roots: Mapping[str, int] = field(default_factory=dict)
     right_values: Mapping[str, Written] = field(default_factory=dict)
     kept: frozenset[str] = frozenset()
+    alternatives: Mapping[str, Written] = field(default_factory=dict)
+    """Other values of names that a line fixes up to a choice: an angle by its tangent."""
 
     def after(
         self, entry: Entry, names: Mapping[str, Written], right: Mapping[str, Written]
@@ -67,6 +69,10 @@ class Author:
             right_values={**self.right_values, **right},
         )
 
+    def otherwise(self) -> Author:
+        """Return the author with the other choice for every name that leaves one."""
+        return replace(self, definitions={**self.definitions, **self.alternatives})
+
     def all(self, says: str, subject: str | None = None) -> tuple[Entry, ...]:
         """Return the claims of a kind, the latest first; about one subject if that is given."""
         return tuple(
@@ -80,6 +86,26 @@ class Author:
     def last(self, says: str, subject: str | None = None) -> Entry | None:
         """Return the latest claim of a kind."""
         return next(iter(self.all(says, subject)), None)
+
+    def solution_in(self, tree: Written) -> tuple[Written, int | None]:
+        """Return a formula with the author's own solutions for the functions that stand in it.
+
+        With it comes the earliest wrong line on which these rest, None if none is wrong.
+        """
+        roots: list[int] = []
+
+        def change(node: Written) -> Written | None:
+            if not isinstance(node, Jet) or node.at is not None:
+                return None
+            name = node.name + "'" * node.order
+            entry = self.last("solution", name) or self.last("output", name)
+            if entry is None:
+                return None
+            if entry.root is not None:
+                roots.append(entry.root)
+            return entry.value
+
+        return changed(tree, change), min(roots, default=None)
 
     def put_in(self, tree: Written) -> Written:
         """Return a formula with the author's names replaced by what they stand for.

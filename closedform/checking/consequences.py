@@ -356,7 +356,7 @@ def _special(claim: Claim, setting: Setting, ground: Ground) -> int | None:
                 return _roots_of_polynomial(claim, setting, ground)
             case "eigenvector" | "generalized eigenvector":
                 return _vector_of(claim, setting, ground)
-        return _by_definitions(claim, setting, ground)
+        return _by_functions(claim, setting, ground) or _by_definitions(claim, setting, ground)
     except OUTSIDE:
         return None
 
@@ -410,6 +410,20 @@ def _vector_of(claim: Claim, setting: Setting, ground: Ground) -> int | None:
                 if root is not None and zeros >= ground.size - (own.root is not None):
                     return root
     return None
+
+
+def _by_functions(claim: Claim, setting: Setting, ground: Ground) -> int | None:
+    """Return the root if the members agree once the author's own functions stand in them."""
+    found = [setting.author.solution_in(value) for value in claim.values]
+    roots = [root for _, root in found if root is not None]
+    if not roots or len(found) < 2:
+        return None
+    first, scope = setting.value(found[0][0], ground), setting.scope_of(ground)
+    for member, _ in found[1:]:
+        opened = setting.opened(member)
+        if not compare(opened, first, scope, ground, approximate=claim.approximate).passes:
+            return None
+    return min(roots)
 
 
 def _by_definitions(claim: Claim, setting: Setting, ground: Ground) -> int | None:

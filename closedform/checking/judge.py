@@ -6,6 +6,7 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 
 from closedform.algebra.elementary import NotElementaryError
+from closedform.checking.angles import angles_of
 from closedform.checking.author import Author, Entry
 from closedform.checking.balls import NoValueError
 from closedform.checking.claim import Claim, Group
@@ -111,6 +112,11 @@ def judged(claim: Claim, setting: Setting) -> Judgement:
     finding = judge(claim, setting)
     if finding.word != "fails":
         return Judgement(claim, finding)
+    if setting.author.alternatives:
+        other = judge(claim, replace(setting, author=setting.author.otherwise()))
+        if other.passes:
+            note = "it holds with the other angle that an earlier line allows"
+            return Judgement(claim, replace(other, notes=(*other.notes, note)))
     try:
         root = carried_from(claim, setting) or _by_mended_names(claim, setting)
     except OUTSIDE:
@@ -145,6 +151,12 @@ def stated(author: Author, judgement: Judgement) -> Author:
         root = claim.line.number
     entry = Entry(replace(claim, groups=_opened(claim, author)), values, root)
     names = dict(_named(claim, author))
+    angles = {name: a for group in claim.groups for name, a in angles_of(group, author).items()}
+    names |= {name: principal for name, (principal, _) in angles.items()}
+    author = replace(
+        author,
+        alternatives={**author.alternatives, **{n: other for n, (_, other) in angles.items()}},
+    )
     right = dict.fromkeys(names, finding.right) if finding.right is not None else {}
     return author.after(entry, names, right if len(names) == 1 else {})
 

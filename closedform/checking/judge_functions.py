@@ -26,9 +26,10 @@ from closedform.checking.matrices import (
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.similar import is_block_form, is_similar
 from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Array, Jet, Range, Symbol, Written, walk
+from closedform.notation.written.tree import Array, Jet, Power, Range, Symbol, Written, walk
 
 __all__ = [
+    "constants_of",
     "judge_block_exponential",
     "judge_equation",
     "judge_homogeneous",
@@ -105,7 +106,7 @@ def judge_solution(claim: Claim, setting: Setting) -> Finding:
 
     With constants of integration that nothing defines it is judged as the general solution.
     """
-    constants = _constants(claim, setting)
+    constants = constants_of(claim, setting)
     if constants:
         return _general(claim, setting, constants)
     return _on_stretches(
@@ -193,14 +194,23 @@ def _inside(range_: Range, stretch: Stretch, setting: Setting) -> bool:
     return applies(range_, scope)
 
 
-def _constants(claim: Claim, setting: Setting) -> list[str]:
+def constants_of(claim: Claim, setting: Setting) -> list[str]:
     """Return the names of constants of integration: those that nothing gives a meaning."""
     facts = setting.ground.facts
     opened = [setting.opened(value) for value in claim.values]
     names = {n.name for tree in opened for n in walk(tree) if isinstance(n, Symbol)}
-    unknown = names - facts.names - {"A", "P", "J"}
+    single = not any(isinstance(n, Array) for tree in opened for n in walk(tree))
+    raised = {n.name for tree in opened for n in _exponents(tree) if isinstance(n, Symbol)}
+    unknown = names - facts.names - ((raised & {"A", "J"}) if single else {"A", "P", "J"})
     shaped = {name for name in unknown if name.rstrip("0123456789_") in CONSTANTS}
     return sorted(unknown) if unknown and unknown == shaped else []
+
+
+def _exponents(tree: Written) -> Iterator[Written]:
+    """Yield what stands in the exponents of e."""
+    for node in walk(tree):
+        if isinstance(node, Power):
+            yield from walk(node.exponent)
 
 
 CONSTANTS = frozenset({"c", "C", "k", "K", "a", "A", "B", "b", "alpha", "beta", "D", "E", "F"})
@@ -215,12 +225,12 @@ def _general(claim: Claim, setting: Setting, constants: list[str]) -> Finding:
 
 def judge_particular(claim: Claim, setting: Setting) -> Finding:
     """Judge a particular solution: it may differ from another by any free response."""
-    return _modulo_free(claim, setting, whole=True, constants=_constants(claim, setting))
+    return _modulo_free(claim, setting, whole=True, constants=constants_of(claim, setting))
 
 
 def judge_homogeneous(claim: Claim, setting: Setting) -> Finding:
     """Judge a solution of the free equations."""
-    return _modulo_free(claim, setting, whole=False, constants=_constants(claim, setting))
+    return _modulo_free(claim, setting, whole=False, constants=constants_of(claim, setting))
 
 
 def _modulo_free(claim: Claim, setting: Setting, *, whole: bool, constants: list[str]) -> Finding:
@@ -396,8 +406,11 @@ def judge_equation(claim: Claim, setting: Setting) -> Finding:
         jets = _jets(inside, stretch)
         scope = replace(setting.scope_of(inside), jets=jets)
         scope = scope.with_symbols({name: v for (name, order), v in jets.items() if order == 0})
-        if not _agree(claim, setting, scope):
-            if _has_derivatives(claim) or not _agree(claim, setting, setting.scope_of(inside)):
+        outputs = _names_outputs(claim, setting)
+        if outputs or not _agree(claim, setting, scope):
+            if (_has_derivatives(claim) and not outputs) or not _agree(
+                claim, setting, setting.scope_of(inside)
+            ):
                 return Finding("fails", "it does not follow from the model")
             note = "it holds along this solution, not for every state"
     return Finding("holds", notes=(note,) if note else ())
@@ -407,6 +420,14 @@ def _agree(claim: Claim, setting: Setting, scope: Scope) -> bool:
     """Whether the members of a chain have equal values."""
     sides = [exact(setting.opened(member), scope) for member in claim.values]
     return all(_minus(one, other).is_zero for one, other in pairwise(sides))
+
+
+def _names_outputs(claim: Claim, setting: Setting) -> bool:
+    """Whether outputs or eliminated unknowns occur, which no state is free for."""
+    truth = setting.ground.truth
+    states = {name for name, _ in truth.jets} | set(truth.inputs)
+    found = {n.name for v in claim.values for n in walk(v) if isinstance(n, Jet)}
+    return bool((found & setting.ground.facts.varying) - states)
 
 
 def _has_derivatives(claim: Claim) -> bool:

@@ -8,15 +8,16 @@ from fractions import Fraction
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.claim import Claim
 from closedform.checking.compare import compare
+from closedform.checking.constants import constant_values, is_constant_of_integration
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.exact import Value
 from closedform.checking.ground import Ground
-from closedform.checking.judge_functions import solution_value
+from closedform.checking.judge_functions import CONSTANTS, solution_value
 from closedform.checking.judging import held_against
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Written
+from closedform.notation.written.tree import Symbol, Written
 
 __all__ = ["QUANTITIES", "judge_definition", "judge_identity", "judge_quantity", "judge_value"]
 
@@ -136,7 +137,7 @@ def judge_identity(claim: Claim, setting: Setting) -> Finding:
     The names in it stand for what the model and earlier lines say.
     """
     names = list(claim.names)
-    known = [name for name in names if _is_known(name, setting)]
+    known = [name for name in names if _is_known(name, claim, setting)]
     members = (*known, *claim.values)
     if len(members) < 2:
         if claim.stated or not claim.names:
@@ -167,14 +168,41 @@ def _first_value(tree: Written, setting: Setting, ground: Ground) -> Value:
     return setting.value(tree, ground)
 
 
-def _is_known(name: Written, setting: Setting) -> bool:
+def _is_known(name: Written, claim: Claim, setting: Setting) -> bool:
+    """Whether a name on the left has a value already; A may be a number, not the matrix."""
+    if isinstance(name, Symbol) and name.name.rstrip("0123456789_") in CONSTANTS:
+        return False
     try:
-        setting.value(name)
+        value = setting.value(name)
+        first = setting.value(claim.values[0])
     except (UnknownNameError, NotJudgedError, NotElementaryError):
         return False
-    return True
+    return isinstance(value, ExactMatrix) == isinstance(first, ExactMatrix)
 
 
 def judge_definition(claim: Claim, setting: Setting) -> Finding:
-    """Judge a line that gives a name to something: its members have to agree with one another."""
+    """Judge a line that gives a name to something: its members have to agree with one another.
+
+    A constant of integration has to be what the author's general solution asks for.
+    """
+    names = [name.name for name in claim.names if isinstance(name, Symbol)]
+    for name in names:
+        if is_constant_of_integration(name, setting):
+            return _constant(name, claim, setting)
     return judge_identity(claim, setting)
+
+
+def _constant(name: str, claim: Claim, setting: Setting) -> Finding:
+    """Judge the value of a constant of integration; any general solution may be meant."""
+    failed: Finding | None = None
+    count = len(constant_values(name, setting, setting.ground))
+    for at in range(count):
+
+        def true(ground: Ground, at: int = at) -> Value:
+            return constant_values(name, setting, ground)[at]
+
+        finding = held_against(claim, setting, true, lambda g: written_back(true(g)))
+        if finding.passes:
+            return finding
+        failed = failed or finding
+    return failed or judge_identity(claim, setting)

@@ -10,6 +10,7 @@ from closedform.checking.claim import Claim, Group, SourceLine
 from closedform.checking.facts import Facts
 from closedform.checking.left_sides import Left, base_and_indices, left_of
 from closedform.notation.written.tree import (
+    Apply,
     Array,
     Identity,
     Jet,
@@ -24,6 +25,7 @@ __all__ = ["claims_of"]
 
 ZERO = Literal(Fraction(0))
 VECTORS = ("v", "u", "w", "xi", "phi", "q", "e", "psi", "eta", "r", "x", "z", "p", "g", "h")
+MATRICES = frozenset({"matrix", "P", "J"})
 OF_STATES = frozenset({"solution", "value", "initial value", "particular solution"})
 OF_STATES |= {"steady state", "homogeneous solution"}
 SPECTRAL = ("lambda", "s", "r", "mu", "z")
@@ -101,6 +103,8 @@ def _left(statement: Statement, facts: Facts) -> Left | None:
     """Return what the left side of a statement names."""
     first, rest = statement.members[0], statement.members[1:]
     left = left_of(first, facts) if rest else None
+    if left is not None and left.says in MATRICES and not any(map(_is_matrix, rest)):
+        left = None
     if left is not None and left.says == "solution" and _is_equation(first, rest, facts):
         left = None
     if left is None and _is_vector_name(first, rest):
@@ -179,6 +183,8 @@ def _by_shape(statement: Statement, facts: Facts) -> tuple[str, tuple[Written, .
     if polynomials and all(_is_polynomial(member, facts) for member in polynomials):
         return "characteristic polynomial", ()
     first = members[0]
+    if _is_angle(first, facts) and len(members) > 1:
+        return "definition", members[:1]
     if isinstance(first, Symbol) and len(members) > 1 and first.name not in facts.names:
         return "definition", members[:1]
     if isinstance(first, Jet) and len(members) > 1 and first.name not in facts.varying:
@@ -194,6 +200,14 @@ def _is_column(value: Written, facts: Facts) -> bool:
     size = len(facts.states)
     shapes = [(len(n.rows), len(n.rows[0])) for n in walk(value) if isinstance(n, Array)]
     return size > 1 and ((size, 1) in shapes or (1, size) in shapes)
+
+
+def _is_angle(node: Written, facts: Facts) -> bool:
+    """Whether a formula is the tangent, sine or cosine of a name, which it so defines."""
+    match node:
+        case Apply("tan" | "sin" | "cos", (Symbol(name),)):
+            return name not in facts.names
+    return False
 
 
 def _is_polynomial(member: Written, facts: Facts) -> bool:
@@ -221,11 +235,21 @@ def _is_equation(first: Written, rest: Sequence[Written], facts: Facts) -> bool:
 
     A column of states stands bare in x' = A x.
     """
-    if _has_jets(rest, facts):
+    if _has_jets(rest[-1:], facts):
         return True
     names = {n.name for member in rest for n in walk(member) if isinstance(n, Symbol)}
     derived = isinstance(first, Jet) and first.order > 0
     return derived and any(facts.has_vector(name) for name in names)
+
+
+def _is_matrix(node: Written) -> bool:
+    """Whether something in a formula is a matrix; a name that goes by A may be a number."""
+    return any(
+        isinstance(part, Array | Identity)
+        or (isinstance(part, Apply) and part.function in ("diag", "inverse", "transpose"))
+        or (isinstance(part, Symbol) and part.name in ("A", "P", "J", "T", "V"))
+        for part in walk(node)
+    )
 
 
 def _is_vector_name(first: Written, rest: Sequence[Written]) -> bool:
