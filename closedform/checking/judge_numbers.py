@@ -17,7 +17,7 @@ from closedform.checking.judging import held_against
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Symbol, Written
+from closedform.notation.written.tree import Symbol, Written, walk
 
 __all__ = ["QUANTITIES", "judge_definition", "judge_identity", "judge_quantity", "judge_value"]
 
@@ -187,9 +187,19 @@ def judge_definition(claim: Claim, setting: Setting) -> Finding:
     """
     names = [name.name for name in claim.names if isinstance(name, Symbol)]
     for name in names:
-        if is_constant_of_integration(name, setting):
+        if is_constant_of_integration(name, setting) and not _is_new(name, claim, setting):
             return _constant(name, claim, setting)
     return judge_identity(claim, setting)
+
+
+def _is_new(name: str, claim: Claim, setting: Setting) -> bool:
+    """Whether the line itself has a solution in which a name stands, with a meaning of its own."""
+    return any(
+        Symbol(name) in walk(value)
+        for other in setting.later
+        if other.line.number == claim.line.number and other.says in ("solution", "output")
+        for value in other.values
+    )
 
 
 def _constant(name: str, claim: Claim, setting: Setting) -> Finding:

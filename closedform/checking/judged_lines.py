@@ -115,8 +115,9 @@ def _all(
 ) -> tuple[JudgedLine, Author]:
     """Judge the claims of a line: first what gives names, then the rest, in order."""
     judgements, author = [], setting.author
+    later = (*claims, *setting.later)
     for claim in sorted(claims, key=lambda claim: claim.says not in EARLIER):
-        found = judged(claim, replace(setting, author=author))
+        found = judged(claim, replace(setting, author=author, later=later))
         judgements.append(found)
         author = stated(author, found)
     judgements.sort(key=lambda judgement: claims.index(judgement.claim))

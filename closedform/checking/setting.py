@@ -40,7 +40,7 @@ class Finding:
 
 @dataclass(frozen=True)
 class Setting:
-    """The ground, the author so far, and the claims that are still to come."""
+    """The ground, the author so far, and the claims of the line and those still to come."""
 
     ground: Ground
     author: Author = field(default_factory=Author)
