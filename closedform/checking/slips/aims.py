@@ -158,7 +158,7 @@ def opened_stretches(claim: Claim, setting: Setting) -> list[Stretch]:
 
 def _points(trial: Trial, known: list[tuple[Stretch | None, Value]]) -> Iterator[Point]:
     ground = trial.ground
-    base: dict[str, arb] = ground.sampled()
+    base: dict[str, arb] = trial.setting.ground.sampled() | ground.sampled()
     base[SPECTRAL] = real(SPECTRAL_SAMPLE)
     names: dict[str, acb] = {name: acb(ball) for name, ball in base.items()}
     for name in _strange(trial, frozenset(names)):

@@ -18,12 +18,13 @@ from closedform.checking.slips.edits import (
     sine_signs,
     term_signs,
 )
-from closedform.checking.slips.factors import factors, left_out, normalised
+from closedform.checking.slips.factors import constants, factors, left_out, normalised
 from closedform.checking.slips.matrix_slips import inverses, rearranged, swapped_products
 from closedform.checking.slips.motion import derivatives, forced_signs, parts
 from closedform.checking.slips.narrowing import narrowed
 from closedform.checking.slips.numbers import one_number
 from closedform.checking.slips.quantities import conversions, digits, rounded
+from closedform.checking.slips.residual import residual_text
 from closedform.checking.slips.shifts import delays, other_names
 from closedform.checking.slips.spectrum_slips import (
     canonical,
@@ -42,6 +43,7 @@ OF_WHOLE: tuple[Source, ...] = (
     swapped_products,
     inverses,
     canonical,
+    conversions,
     rounded,
     digits,
     normalised,
@@ -59,7 +61,7 @@ LATER: tuple[Source, ...] = (
     rearranged,
     parts,
     derivatives,
-    conversions,
+    constants,
     eigenvectors,
     transformations,
 )
@@ -73,23 +75,40 @@ def diagnosed(claim: Claim, finding: Finding, setting: Setting) -> tuple[Slip | 
 
     One change in one member has to make the line hold: it is judged again as it would then be.
     """
-    return _slip(claim, finding, setting), finding.reason
-
-
-def _slip(claim: Claim, finding: Finding, setting: Setting) -> Slip | None:
     if claim.says == "eigenvalues":
-        found = listed(claim, finding, setting)
-        if found is not None:
-            return found
-    for trial in aimed(claim, finding, setting):
-        inner = narrowed(trial)
-        stages = ((trial, OF_WHOLE), (inner, OF_PLACES), (trial, LATER), (inner, LAST))
-        for tried, sources in stages:
-            for source in sources:
-                found = _first(tried, source)
-                if found is not None:
-                    return found
+        listing = listed(claim, finding, setting)
+        if listing is not None:
+            return listing, finding.reason
+    trials = list(aimed(claim, finding, setting))
+    slip = next((found for trial in trials if (found := _slip(trial)) is not None), None)
+    return slip, _reason(claim, finding, trials)
+
+
+def _slip(trial: Trial) -> Slip | None:
+    inner = narrowed(trial)
+    stages = ((trial, OF_WHOLE), (inner, OF_PLACES), (trial, LATER), (inner, LAST))
+    for tried, sources in stages:
+        for source in sources:
+            found = _first(tried, source)
+            if found is not None:
+                return found
     return None
+
+
+def _reason(claim: Claim, finding: Finding, trials: list[Trial]) -> str:
+    """Return why a line fails: what its judge says, and how far it is from the truth."""
+    if not trials or "→" in finding.reason:
+        return finding.reason
+    last = trials[0]
+    told = residual_text(last)
+    member = ""
+    if len(claim.values) > len(claim.groups):
+        places = [k for k, value in enumerate(claim.values) if value == last.tree]
+        member = f"member {places[-1] + 1} of {len(claim.values)}: " if places else ""
+    if told.startswith("entry") and finding.reason.startswith(("entry", "entries")):
+        several = len(finding.entries) > 1
+        return f"{member}{finding.reason}, {told}" if several else f"{member}{told}"
+    return member + "; ".join(part for part in (finding.reason, told) if part)
 
 
 def _first(trial: Trial, source: Source) -> Slip | None:

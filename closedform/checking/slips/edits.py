@@ -50,6 +50,8 @@ def term_signs(trial: Trial) -> Iterator[Candidate]:
 
 def _turned(trial: Trial, spot: Spot) -> Iterator[Change]:
     node = spot.node
+    if wave_above(spot) == "step":
+        return
     if spot.path == trial.start:
         yield _whole_sign(trial, node), "" if trial.entry else "the whole right side", negated(node)
     if isinstance(node, Sum):

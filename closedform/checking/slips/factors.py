@@ -11,7 +11,7 @@ from flint import acb, arb, ctx
 from closedform.algebra.elementary import Element
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.slips import names
-from closedform.checking.slips.making import terms_of, times
+from closedform.checking.slips.making import negated, terms_of, times
 from closedform.checking.slips.measuring import real, size
 from closedform.checking.slips.numbers import one_number
 from closedform.checking.slips.solving import simplest
@@ -21,7 +21,7 @@ from closedform.checking.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import Sum, Written
 
-__all__ = ["factors", "left_out", "normalised"]
+__all__ = ["constants", "factors", "left_out", "normalised"]
 
 
 def normalised(trial: Trial) -> Iterator[Candidate]:
@@ -68,7 +68,7 @@ def factors(trial: Trial) -> Iterator[Candidate]:
 
 
 def left_out(trial: Trial) -> Iterator[Candidate]:
-    """Yield the formula with one of the terms of the true one added, a constant one or any."""
+    """Yield the formula with one of the terms of the true one added."""
     true = trial.true
     if not isinstance(true, Element) or trial.entry is not None or true.is_constant:
         return
@@ -76,12 +76,35 @@ def left_out(trial: Trial) -> Iterator[Candidate]:
     for term in terms if len(terms) > 1 else ():
         where = part_text(term)
         yield Candidate(names.TERM_LEFT_OUT, where, _added(trial.tree, term))
+
+
+def constants(trial: Trial) -> Iterator[Candidate]:
+    """Yield a function of time with a constant added, where the true one has none."""
+    true = trial.true
+    if trial.claim.says not in ("solution", "output") or not isinstance(true, Element):
+        return
     own = trial.own()
-    if isinstance(own, Element):
+    if isinstance(own, Element) and not _has_constant(true):
         rest = true - own
-        if rest.is_constant and trial.claim.says in ("solution", "output"):
+        if rest.is_constant and not rest.is_zero:
             missing = written_back(rest)
-            yield Candidate(names.CONSTANT, part_text(missing), _added(trial.tree, missing))
+            where = f"the constant {plain_written(written_back(-rest))}"
+            yield Candidate(names.CONSTANT, where, _without(trial.tree, missing))
+
+
+def _has_constant(value: Element) -> bool:
+    if value.below is not None:
+        return False
+    return any(rate.is_zero and not power for rate, _, power, _ in value.terms())
+
+
+def _without(tree: Written, missing: Written) -> Written:
+    """Return a sum with a term added, or without the opposite of it."""
+    terms = terms_of(tree)
+    rest = tuple(term for term in terms if term != negated(missing))
+    if len(rest) == len(terms):
+        return _added(tree, missing)
+    return rest[0] if len(rest) == 1 else Sum(rest)
 
 
 def _added(tree: Written, term: Written) -> Written:

@@ -15,9 +15,9 @@ from closedform.notation.written.tree import (
     walk,
 )
 
-__all__ = ["ONE", "contains", "is_number", "negated", "number", "over", "times", "without"]
+__all__ = ["ONE", "ZERO", "contains", "is_number", "negated", "number", "over", "times", "without"]
 
-ONE = Literal(Fraction(1))
+ZERO, ONE = Literal(Fraction(0)), Literal(Fraction(1))
 
 
 def number(value: Fraction | int) -> Written:

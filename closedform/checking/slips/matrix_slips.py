@@ -9,7 +9,7 @@ from typing import TypeVar
 from closedform.checking.judge_vectors import authors_matrix
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.slips import names
-from closedform.checking.slips.making import ONE, negated, over, times
+from closedform.checking.slips.making import ONE, ZERO, negated, over, times
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.written_back import written_back
@@ -117,6 +117,8 @@ def _orders(trial: Trial, rows: Rows) -> Iterator[tuple[str, str, Rows]]:
         name = {"P": names.TRANSPOSED_P, "P inverse": names.TRANSPOSED_INVERSE}.get(
             trial.claim.says, names.TRANSPOSED
         )
+        if trial.claim.says in ("J", "exp J", "exp A") and _is_lower(rows):
+            name = names.CHAIN_SIDE
         yield name, "all of it", tuple(zip(*rows, strict=True))
     if min(height, width) > 1:
         for i, j in combinations(range(width), 2):
@@ -138,6 +140,13 @@ def _orders(trial: Trial, rows: Rows) -> Iterator[tuple[str, str, Rows]]:
             for i in range(height)
         )
         yield names.ENTRIES, where, new
+
+
+def _is_lower(rows: Rows) -> bool:
+    """Whether zeros stand above the diagonal, and not everywhere below."""
+    above = [e for i, row in enumerate(rows) for j, e in enumerate(row) if j > i]
+    below = [e for i, row in enumerate(rows) for j, e in enumerate(row) if j < i]
+    return set(above) == {ZERO} and set(below) != {ZERO}
 
 
 T = TypeVar("T")

@@ -98,8 +98,8 @@ def _wrong_parts(trial: Trial, stretch: Stretch) -> Iterator[Wrong]:
         if particular is not None:
             yield names.PARTICULAR_MISSING, "the particular solution", _minus(true, particular)
             yield names.PARTICULAR_TWICE, "the particular solution", _plus(true, particular)
-            yield names.FITTED_ALONE, "the constants", _plus(free, particular)
             yield names.FREE_MISSING, "the free part", particular
+            yield names.FITTED_ALONE, "the constants", _plus(free, particular)
         yield from _without_damping(trial, true)
     if isinstance(true, Element):
         limit = true.limit()
@@ -109,6 +109,8 @@ def _wrong_parts(trial: Trial, stretch: Stretch) -> Iterator[Wrong]:
     for other in ground.truth.solution:
         if other != subject and isinstance(true, Element):
             name = names.OTHER_STATE
+            if subject.startswith(other + "'"):
+                name = names.NOT_DIFFERENTIATED
             yield name, f"it is that of {other}", solution_value(other, ground, stretch)
 
 
@@ -235,6 +237,10 @@ def _differentiated(
     return total
 
 
+def _minus_true(trial: Trial) -> Value:
+    return -trial.true if trial.true is not None else trial.ground.field.zero
+
+
 def forced_signs(trial: Trial) -> Iterator[Candidate]:
     """Yield the right particular solution where the line has that of m, c or k of opposite sign."""
     ground, right = trial.ground, trial.right
@@ -247,7 +253,7 @@ def forced_signs(trial: Trial) -> Iterator[Candidate]:
         return
     drive = ground.drive(ground.stretches[-1])
     force = drive[1]
-    if len(ground.stretches) != 1 or not drive[0].is_zero:
+    if len(ground.stretches) != 1 or not drive[0].is_zero or trial.equals(_minus_true(trial)):
         return
     stiffness, damping, one = characteristic_coefficients(ground.matrix)
     rate = own.derivative()

@@ -10,6 +10,7 @@ from flint import ctx
 from closedform.checking.slips import names
 from closedform.checking.slips.digit_slips import digit_slip
 from closedform.checking.slips.making import times
+from closedform.checking.slips.rate_places import rate_places
 from closedform.checking.slips.rates import rate_slip
 from closedform.checking.slips.solving import Place, Solved, solved
 from closedform.checking.slips.spots import Spot
@@ -17,24 +18,17 @@ from closedform.checking.slips.trial import BITS, Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed, wave_above
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (
-    EULER,
-    Apply,
     Array,
     Literal,
     Negation,
-    Power,
     Product,
     Quotient,
     Sum,
-    Symbol,
     Written,
-    changed,
     walk,
 )
 
 __all__ = ["is_bare", "one_number"]
-
-WAVES = ("sin", "cos", "sinh", "cosh", "exp", "tan")
 
 
 def one_number(trial: Trial) -> Iterator[Candidate]:
@@ -55,18 +49,17 @@ def is_bare(tree: Written) -> bool:
 
 
 def _plainness(one: Solved) -> tuple[int, int, Fraction]:
-    """Integers for integers first, then fractions, then roots; smaller ones first."""
-    kind = {"number": 0, "angle": 1, "exponent": 1, "term": 2}[one.place.kind]
+    """Integers first, then fractions and roots; the sign as before; nearer numbers first."""
+    kind = {"angle": 0, "exponent": 0, "number": 1, "term": 2}[one.place.kind]
     inside = one.written.operand if isinstance(one.written, Negation) else one.written
-    negative = inside is not one.written
+    turned = (inside is not one.written) != (one.place.before < 0)
     if isinstance(inside, Literal):
-        far = abs(inside.value - one.place.before)
-        return (negative, kind, far)
-    return (2 + negative, kind, Fraction(0))
+        return (turned, kind, abs(inside.value - abs(one.place.before)))
+    return (2 + turned, kind, Fraction(0))
 
 
 def _places(trial: Trial) -> Iterator[Place]:
-    yield from _rates(trial)
+    yield from rate_places(trial)
     for spot in trial.spots():
         yield from _at(trial, spot)
 
@@ -100,76 +93,6 @@ def _leads(node: Written) -> bool:
     if isinstance(node, Product):
         return any(isinstance(f, Literal) for f in node.factors)
     return isinstance(node, Quotient) and isinstance(node.numerator, Literal)
-
-
-def _rates(trial: Trial) -> Iterator[Place]:
-    """Yield the exponents and angles that go with the time, equal ones together."""
-    t = Symbol(trial.ground.truth.time)
-    seen: set[tuple[str, Written]] = set()
-    for spot in trial.spots():
-        node = spot.node
-        if isinstance(node, Power) and node.base == EULER:
-            kind, argument = "exponent", node.exponent
-        elif isinstance(node, Apply) and node.function in WAVES:
-            kind, argument = ("exponent" if node.function == "exp" else "angle"), node.arguments[0]
-        else:
-            continue
-        part = _timed_part(argument, t)
-        if part is None or (kind, argument) in seen:
-            continue
-        seen.add((kind, argument))
-        yield _rate_place(trial, kind, argument, part, t)
-
-
-def _timed_part(argument: Written, t: Symbol) -> Written | None:
-    """Return the one term of an argument that has the time in it, if it is a number times t."""
-    terms = argument.terms if isinstance(argument, Sum) else (argument,)
-    timed = [term for term in terms if any(n == t for n in walk(term))]
-    return timed[0] if len(timed) == 1 and coefficient(timed[0], t) is not None else None
-
-
-def coefficient(term: Written, t: Symbol) -> Fraction | None:
-    """Return the rational number that stands before the time in r t, None for anything else."""
-    match term:
-        case Negation(operand):
-            inside = coefficient(operand, t)
-            return None if inside is None else -inside
-        case Literal(value):
-            return value
-        case Quotient(above, below):
-            one, two = coefficient(above, t), coefficient(below, t)
-            return None if one is None or not two else one / two
-        case Product(factors):
-            total = Fraction(1)
-            for factor in factors:
-                one = coefficient(factor, t)
-                if one is None:
-                    return None
-                total *= one
-            return total
-    return Fraction(1) if term == t else None
-
-
-def _rate_place(trial: Trial, kind: str, argument: Written, part: Written, t: Symbol) -> Place:
-    before = coefficient(part, t)
-    assert before is not None  # noqa: S101  see _timed_part
-
-    def tree(new: Written) -> Written:
-        renewed = changed(argument, lambda n: times(new, t) if n == part else None)
-
-        def change(node: Written) -> Written | None:
-            if kind == "exponent" and node == Power(EULER, argument):
-                return Power(EULER, renewed)
-            if isinstance(node, Apply) and node.arguments == (argument,) and node.function in WAVES:
-                return Apply(node.function, (renewed,))
-            return None
-
-        return changed(trial.tree, change)
-
-    literals = [n for n in walk(part) if isinstance(n, Literal)]
-    text = plain_written(argument)
-    where = f"the {kind} {text}" + (f" of entry {trial.entry}" if trial.entry else "")
-    return Place(kind, where, before, tree, literals[0] if len(literals) == 1 else None)
 
 
 def _told(trial: Trial, one: Solved) -> tuple[str, str]:

@@ -9,6 +9,7 @@ from flint import acb, ctx
 
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.compare import compare
+from closedform.checking.digits import Judged
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Value
 from closedform.checking.judge_numbers import QUANTITIES
@@ -40,8 +41,8 @@ def rounded(trial: Trial) -> Iterator[Candidate]:
     wrong = found.match.wrong
     spans = {(j.literal.start, j.literal.end, j.literal): j for j in wrong}
     name = names.EARLY_ROUNDING
-    if len(wrong) == 1 and wrong[0].verdict != "off":
-        name = names.TRUNCATED if wrong[0].verdict == "truncated" else names.ROUNDING
+    if len(wrong) == 1:
+        name = _single(wrong[0])
 
     def change(node: Written) -> Written | None:
         if not isinstance(node, Literal):
@@ -52,6 +53,16 @@ def rounded(trial: Trial) -> Iterator[Candidate]:
     texts = [f"{plain_written(j.literal)} ought to be {j.correct}" for j in wrong[:FEW]]
     with ctx.workprec(BITS):
         yield Candidate(name, ", ".join(texts), changed(trial.tree, change))
+
+
+def _single(wrong: Judged) -> str:
+    """Return the name of the slip in one number that is not rounded right."""
+    if wrong.verdict != "off":
+        return names.TRUNCATED if wrong.verdict == "truncated" else names.ROUNDING
+    with ctx.workprec(BITS):
+        right = to_places(acb(wrong.ball), wrong.literal.last_place)
+    pen = "" if right is None else digit_slip(wrong.literal, right)
+    return pen or names.EARLY_ROUNDING
 
 
 def digits(trial: Trial) -> Iterator[Candidate]:

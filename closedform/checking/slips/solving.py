@@ -8,7 +8,7 @@ from fractions import Fraction
 
 from flint import acb, arb, ctx
 
-from closedform.checking.slips.making import number, over, times
+from closedform.checking.slips.making import ZERO, number, over, times
 from closedform.checking.slips.measuring import distance, largest, real, size
 from closedform.checking.slips.trial import BITS, Trial
 from closedform.notation.written.tree import PI, Apply, Literal, Symbol, Written
@@ -57,7 +57,7 @@ def solved(trial: Trial, place: Place) -> Iterator[Solved]:
     """
     with ctx.workprec(BITS):
         value = _root(trial, place)
-        if value is None or not _fits(trial, place, value):
+        if value is None:
             return
         forms = [simplest(value)] if not trial.loose else []
         if trial.loose:
@@ -66,7 +66,7 @@ def solved(trial: Trial, place: Place) -> Iterator[Solved]:
             else:
                 forms.append(_near_integer(value))
     for form in forms:
-        if form is not None:
+        if form is not None and form != ZERO:
             yield Solved(place, form, value)
 
 
@@ -122,9 +122,21 @@ def _rational(value: arb) -> Fraction | None:
 
 def _root(trial: Trial, place: Place) -> acb | None:
     """Solve for the number by secants, at the entry and point where it matters first."""
+    shares = (1, Fraction(1, 4), 4) if place.kind == "exponent" else (1,)
+    starts = [place.before * share for share in shares]
+    if place.kind == "exponent" and place.before:
+        starts.append(1 / place.before)
+    for start in starts:
+        found = _root_from(trial, place, start)
+        if found is not None and _fits(trial, place, found):
+            return found
+    return None
+
+
+def _root_from(trial: Trial, place: Place, start: Fraction) -> acb | None:
     tree = place.tree(Symbol(SOUGHT))
-    first = acb(real(place.before))
-    step = (size(first) / 64).max(arb(1) / 64)
+    first = acb(real(start))
+    step = (size(first) / 64).max(arb(1) / 64 if start == 0 else arb(0))
     best: tuple[int, int] | None = None
     moved = arb(0)
     for k in range(len(trial.points)):

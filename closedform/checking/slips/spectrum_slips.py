@@ -13,7 +13,7 @@ from closedform.checking.judge_vectors import authors_diagonal, authors_matrix
 from closedform.checking.matrices import ExactMatrix, diagonal, identity
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips import names
-from closedform.checking.slips.making import ONE, negated, number
+from closedform.checking.slips.making import ONE, ZERO, negated
 from closedform.checking.slips.numbers import is_bare
 from closedform.checking.slips.solving import Place, solved
 from closedform.checking.slips.spots import Spot
@@ -33,7 +33,6 @@ from closedform.notation.written.tree import (
 
 __all__ = ["canonical", "eigenvectors", "listed", "root_numbers", "transformations"]
 
-ZERO = number(0)
 MOST_ORDERS = 24
 
 
@@ -117,7 +116,9 @@ def canonical(trial: Trial) -> Iterator[Candidate]:
         rows, size = spot.node.rows, len(spot.node.rows)
         places = [k for k in range(size - 1) if rows[k][k] == rows[k + 1][k + 1]]
         for chosen in product((False, True), repeat=len(places)):
-            ones = {(k, k + 1): ONE if on else ZERO for k, on in zip(places, chosen, strict=True)}
+            ones: dict[tuple[int, int], Written] = {
+                (k, k + 1): ONE if on else ZERO for k, on in zip(places, chosen, strict=True)
+            }
             more = any(chosen) and all(rows[k][k + 1] == ZERO for k in places)
             name = names.GEOMETRIC if more else names.CHAIN_ENTRY
             where = "above the diagonal"

@@ -211,7 +211,7 @@ class Trial:
         """What the names are worth at the sample, the time not among them."""
         if self.points:
             return self.points[0].names
-        return {name: acb(ball) for name, ball in self.ground.sampled().items()}
+        return {name: acb(ball) for name, ball in self.setting.ground.sampled().items()}
 
     def value(self, tree: Written, point: Point) -> tuple[acb, ...] | None:
         """Return the entries of a formula at a point; None if it has none there."""
