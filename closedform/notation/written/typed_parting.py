@@ -45,7 +45,11 @@ class Parting:
             start, end, note = self._without_words(begin, stop)
             if start >= end:
                 continue
-            yield from self._with_conditions(start, end, note)
+            for chunk in self._with_conditions(start, end, note):
+                if chunk.conditions:
+                    chunk.start, chunk.stop, beside = self._without_words(chunk.start, chunk.stop)
+                    chunk.note = " ".join(filter(None, (note, beside)))
+                yield chunk
 
     def _parts(self) -> Iterator[tuple[int, int]]:
         """Yield what stands between separators; a line that ends or begins in a sign goes on."""

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
 from dataclasses import dataclass, field, replace
 
 from closedform.notation.written.typed_scanner import Lexeme, StrayError
@@ -43,6 +44,7 @@ class Signs:
     flipped: frozenset[int] = frozenset()
     doubts: dict[int, Doubt] = field(default_factory=dict)
     pairs: dict[int, int] = field(default_factory=dict)
+    _depth: int = 0
 
     def __post_init__(self) -> None:
         opened: list[int] = []
@@ -113,6 +115,25 @@ class Signs:
 
         A function without bracket ends with its argument.
         """
+        with self._deeper(k):
+            return self._factor_end(k, stop)
+
+    @contextmanager
+    def _deeper(self, k: int) -> Iterator[None]:
+        """Bound how deep functions and exponents stand inside each other."""
+        if self._depth == DEEPEST:
+            where = self.all[min(k, len(self.all) - 1)]
+            found = self.text[where.start : where.end]
+            raise StrayError(
+                where.start, found, "the formula is nested too deep; name a part of it"
+            )
+        self._depth += 1
+        try:
+            yield
+        finally:
+            self._depth -= 1
+
+    def _factor_end(self, k: int, stop: int) -> int:
         kind = self.kind(k, stop)
         if kind == "RADICAL":
             k = self.factor_end(k + 1, stop)
@@ -159,6 +180,10 @@ class Signs:
 
     def exponent_end(self, k: int, stop: int) -> int:
         """Return where an exponent ends that begins at `k`: signs, an operand, its own exponent."""
+        with self._deeper(k):
+            return self._exponent_end(k, stop)
+
+    def _exponent_end(self, k: int, stop: int) -> int:
         while self.kind(k, stop) in SIGNED:
             k += 1
         if not self.begins_factor(k, stop):

@@ -94,11 +94,11 @@ class _Statements(Parting):
         """Return the statement of a stretch; None if it has only a condition."""
         conditions, notes = [], [chunk.note] if chunk.note else []
         for begin, stop in chunk.conditions:
-            found = self._range(begin, stop)
-            if found is None:
+            condition = self._range(begin, stop)
+            if condition is None:
                 notes.append(self.signs.inside(begin, stop))
             else:
-                conditions.append(found)
+                conditions.append(condition)
         if chunk.start == chunk.stop:
             first = self.signs.all[min(chunk.start, len(self.signs.all) - 1)]
             found = self.signs.text[first.start : first.end]
@@ -193,10 +193,10 @@ class _Statements(Parting):
     def _refuse_prose(self, start: int, stop: int) -> None:
         """Refuse words that stand side by side: they are no product of names."""
         for k in range(start, stop):
-            if not self._is_plain_word(k):
-                continue
             beside = [m for m in (k - 1, k + 1) if start <= m < stop]
-            if any(self.signs.all[m].kind in ("ATOM", "NUMBER", "TEXT") for m in beside):
+            factors = any(self.signs.all[m].kind in ("ATOM", "NUMBER", "TEXT") for m in beside)
+            words = any(self._is_plain_word(m, 2) for m in beside)
+            if (factors and self._is_plain_word(k, 4)) or (words and self._is_plain_word(k, 3)):
                 found = self.signs.inside(k, k + 1)
                 raise StrayError(
                     self.signs.all[k].start,
@@ -204,14 +204,15 @@ class _Statements(Parting):
                     "it is no declared name and no function; leave words out, or declare it",
                 )
 
-    def _is_plain_word(self, k: int) -> bool:
+    def _is_plain_word(self, k: int, least: int) -> bool:
+        """Whether a word of so many small letters is no name and no function that is known."""
         sign = self.signs.all[k]
         text = self.signs.inside(k, k + 1)
         known = self._is_declared(k) or not isinstance(sign.value, Symbol) or sign.word >= 0
-        limit = text in ("limit", "laplace", "inverse_laplace")
+        limit = text in ("lim", "limit", "laplace", "inverse_laplace")
         return (
             not known
-            and re.fullmatch("[a-z]{4,}", text) is not None
+            and re.fullmatch(f"[a-z]{{{least},}}", text) is not None
             and not limit
             and (spelled_out(text)[0] not in GREEK)
         )
