@@ -21,6 +21,7 @@ from closedform.checking.matrices import (
     diagonal,
     identity,
 )
+from closedform.checking.rounded_forms import exact_form
 from closedform.checking.rounded_vectors import rounded_direction
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.similar import is_block_form, is_similar
@@ -57,9 +58,12 @@ def authors_matrix(says: str, setting: Setting, ground: Ground) -> ExactMatrix |
     if tree is None:
         return None
     try:
-        return matrix_value(tree, setting, ground)
+        matrix = matrix_value(tree, setting, ground)
+        rounded = says in ("J", "real form") and has_decimals(setting.opened(tree))
+        form = exact_form(matrix, ground) if rounded else None
     except (NotJudgedError, NotElementaryError, ZeroDivisionError):
         return None
+    return matrix if form is None else form
 
 
 def authors_diagonal(setting: Setting, ground: Ground) -> ExactMatrix | None:
@@ -254,6 +258,17 @@ def judge_canonical(claim: Claim, setting: Setting) -> Finding:
             return Finding(
                 "fails", f"it is {rows} by {columns}, the matrix A has {ground.size} rows"
             )
+        if not is_similar(matrix, ground) and has_decimals(opened):
+            if exact_form(matrix, ground) is not None:
+                last = held_against(
+                    claim,
+                    setting,
+                    lambda g, m=member: exact_form(matrix_value(m, setting, g), g) or g.matrix,
+                    values=(member,),
+                )
+                if not last.passes:
+                    return last
+                continue
         if not is_similar(matrix, ground):
             return Finding("fails", "it is not similar to A", right(ground))
         if not is_block_form(matrix):
@@ -308,6 +323,10 @@ def _transformation(
         inverse = matrix.inverse()
     except ZeroDivisionError:
         return Finding("fails", "it has no inverse")
+    if has_decimals(member):
+        finding = _rounded_columns(member, ground)
+        if finding is not None:
+            return finding
     product = inverse @ ground.matrix @ matrix
     own = authors_matrix("J", setting, ground) or authors_matrix("real form", setting, ground)
     if own is not None and own.shape == product.shape and is_similar(own, ground):
