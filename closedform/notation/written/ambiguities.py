@@ -12,11 +12,11 @@ from closedform.notation.written.grammar import token
 from closedform.notation.written.names import GREEK, Names
 from closedform.notation.written.pairs import bounds, pairs
 from closedform.notation.written.plain_form import plain_written
+from closedform.notation.written.preferences import PLAIN, denominator, operand_end, preferred
 from closedform.notation.written.statements import statements_of
 from closedform.notation.written.tree import (
     EULER,
     Ambiguity,
-    Constant,
     Literal,
     Reading,
     Statement,
@@ -31,10 +31,6 @@ LARGEST = 5_000
 """Tokens of a text whose other readings are worked out."""
 MOST = 8
 """Places of one text for which the other reading is worked out."""
-
-
-Insertions = list[tuple[int, Token]]
-"""Tokens to be set before indices."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -121,8 +117,7 @@ def found_choices(
     `given` are those that were found on the way, `logs` where there is a logarithm without
     base.  A slash whose likelier reading takes two factors below gets a group in `tokens`.
     """
-    partners = pairs(tokens, "")
-    _inserted(tokens, _grouped(tokens, partners, names) + _arguments(tokens, partners, names))
+    preferred(tokens, names)
     if len(tokens) > LARGEST:
         return []
     return list(islice(_choices(tokens, names, given, logs), MOST))
@@ -181,23 +176,6 @@ def _group(parts: Sequence[Token]) -> list[Token]:
     return [token("GROUP_OPEN", "", start, start), *parts, token("GROUP_CLOSE", "", end, end)]
 
 
-def _operand(tokens: Sequence[Token], at: int, partners: dict[int, int]) -> int:
-    """Return the index behind the operand at an index, with its exponent."""
-    if at >= len(tokens):
-        return at
-    kind = tokens[at].type
-    if kind in ("FRACTION", "ROOT"):
-        at = partners[partners[at + 1] + 1] + 1
-    elif kind == "CALL":
-        at = partners[at + 1] + 1
-    else:
-        at = partners.get(at, at) + 1
-    while at < len(tokens) and tokens[at].type in ("POWER", "POSTFIX"):
-        at = at + 1 if tokens[at].type == "POSTFIX" else partners.get(at + 1, at + 1) + 1
-    return at
-
-
-PLAIN = frozenset("NUMBER ATOM CALL FRACTION ROOT BAR_OPEN".split())
 TRIGONOMETRIC = frozenset({"sin", "cos", "tan", "sinh", "cosh", "tanh"})
 
 
@@ -218,7 +196,7 @@ def _argument(tokens: list[Token], at: int, partners: dict[int, int], names: Nam
             stop = token("ARGUMENT_END", "", *bounds(tokens[end]))
             other = (*tokens[:end], stop, *tokens[end:])
             found.append(Choice(other, *bounds(tokens[at], tokens[partners[end]])))
-        end = _operand(tokens, end, partners)
+        end = operand_end(tokens, end, partners)
     if end >= len(tokens):
         return found
     if tokens[end].type == "ARGUMENT_END":
@@ -227,11 +205,11 @@ def _argument(tokens: list[Token], at: int, partners: dict[int, int], names: Nam
     behind = end
     match tokens[end].type:
         case "EULER":
-            behind = _operand(tokens, end + 2, partners) if end + 2 < len(tokens) else end
+            behind = operand_end(tokens, end + 2, partners) if end + 2 < len(tokens) else end
         case "OVER":
-            behind = _operand(tokens, end + 1, partners)
+            behind = operand_end(tokens, end + 1, partners)
         case "PLUS" | "MINUS" if tokens[at].value in TRIGONOMETRIC:
-            last = _operand(tokens, end + 1, partners)
+            last = operand_end(tokens, end + 1, partners)
             name = getattr(tokens[end + 1].value, "name", "") if end + 1 < len(tokens) else ""
             phase = name.split("_")[0] in GREEK and tokens[end + 1].type == "ATOM"
             timed = any(t.value == Symbol(names.time) for t in tokens[first:end])
@@ -249,104 +227,6 @@ def _argument(tokens: list[Token], at: int, partners: dict[int, int], names: Nam
     return found
 
 
-def _arguments(tokens: list[Token], partners: dict[int, int], names: Names) -> Insertions:
-    """Return ends of arguments without brackets, where the time tells.
-
-    In cos t (1 + t) the bracket is behind the argument, which has its time already; in
-    sin 2 pi * 50 t and in sin pi/4 the argument goes on behind the sign.
-    """
-    time = Symbol(names.time)
-    new: Insertions = []
-    for at, part in enumerate(tokens):
-        first = at + 1
-        if part.type != "FUNCTION" or first >= len(tokens):
-            continue
-        if tokens[first].type == "POWER":
-            first = partners.get(first + 1, first + 1) + 1
-        end, timed, closed = first, False, False
-        while end < len(tokens) and (
-            tokens[end].type in PLAIN or (tokens[end].type == "OPEN" and end > first)
-        ):
-            if tokens[end].type == "OPEN" and timed:
-                new.append((end, token("ARGUMENT_END", "set", *bounds(tokens[end]))))
-                closed = True
-                break
-            behind = _operand(tokens, end, partners)
-            timed = timed or any(t.value == time for t in tokens[end:behind])
-            end = behind
-        sign = tokens[end].type if first < end < len(tokens) and not closed else ""
-        if sign not in ("TIMES", "OVER") or timed:
-            continue
-        behind = end + 1
-        while behind < len(tokens) and tokens[behind].type in PLAIN:
-            behind = _operand(tokens, behind, partners)
-            if sign == "OVER":
-                break
-        more = any(t.value == time for t in tokens[end:behind])
-        number = all(
-            t.type not in ("ATOM", "CALL") or isinstance(t.value, Constant)
-            for t in tokens[first:behind]
-        )
-        if behind > end + 1 and ((sign == "TIMES" and more) or (sign == "OVER" and number)):
-            new += _around(tokens, first, behind)
-    return new
-
-
-def _around(tokens: Sequence[Token], first: int, behind: int) -> Insertions:
-    """Return a group round tokens, marked as set by a choice."""
-    start, end = bounds(tokens[first], tokens[behind - 1])
-    return [
-        (first, token("GROUP_OPEN", "set", start, start)),
-        (behind, token("GROUP_CLOSE", "", end, end)),
-    ]
-
-
-def _inserted(tokens: list[Token], new: Insertions) -> None:
-    """Insert tokens before indices; closing ones stand before opening ones."""
-    order = sorted(new, key=lambda one: (one[0], one[1].type != "GROUP_CLOSE"), reverse=True)
-    for_index: dict[int, list[Token]] = {}
-    for index, part in reversed(order):
-        for_index.setdefault(index, []).append(part)
-    tokens[:] = [
-        part
-        for index in range(len(tokens) + 1)
-        for part in (*for_index.get(index, ()), *tokens[index : index + 1])
-    ]
-
-
-def _denominator(tokens: Sequence[Token], at: int, partners: dict[int, int]) -> tuple[int, int]:
-    """Return the indices behind the first and behind the last factor that follow a slash."""
-    first = _operand(tokens, at + 1, partners)
-    last = first
-    while last < len(tokens) and tokens[last].type in PLAIN:
-        last = _operand(tokens, last, partners)
-    return first, last
-
-
-def _grouped(tokens: list[Token], partners: dict[int, int], names: Names) -> Insertions:
-    """Return groups round RC in an exponent -t/RC: the time is above, and none below."""
-    time = Symbol(names.time)
-    new: Insertions = []
-    opened = [-1]
-    times = [0]
-    for at, part in enumerate(tokens):
-        times.append(times[-1] + (part.value == time))
-        if part.type.endswith("OPEN"):
-            opened.append(at)
-        elif part.type.endswith("CLOSE"):
-            opened.pop()
-        before = opened[-1]
-        if part.type != "OVER" or before < 1 or at + 1 == len(tokens):
-            continue
-        inside = tokens[before - 1].type in ("POWER", "FUNCTION")
-        if not inside or tokens[at + 1].type not in PLAIN or times[at] == times[before]:
-            continue
-        first, last = _denominator(tokens, at, partners)
-        if last > first and all(t.value != time for t in tokens[at + 1 : last]):
-            new += _around(tokens, at + 1, last)
-    return new
-
-
 def _division(tokens: list[Token], at: int, partners: dict[int, int]) -> list[Choice]:
     """Return the other reading of a slash with two factors behind it."""
     below = tokens[at + 1] if at + 1 < len(tokens) else None
@@ -358,7 +238,7 @@ def _division(tokens: list[Token], at: int, partners: dict[int, int]) -> list[Ch
         return [Choice(other, *bounds(tokens[at - 1], tokens[close]))]
     if below.type not in PLAIN:
         return []
-    first, last = _denominator(tokens, at, partners)
+    first, last = denominator(tokens, at, partners)
     if last == first:
         return []
     other = (*tokens[: at + 1], *_group(tokens[at + 1 : last]), *tokens[last:])
@@ -381,7 +261,7 @@ def _bare_exponent(tokens: list[Token], at: int) -> list[Choice]:
 
 
 def _mixed(tokens: list[Token], at: int, partners: dict[int, int]) -> list[Choice]:
-    """Return the other reading of 2\\frac12 as a mixed number."""
+    r"""Return the other reading of 2\\frac12 as a mixed number."""
     before = tokens[at - 1] if at else None
     middle = partners[at + 1]
     close = partners[middle + 1]

@@ -4,17 +4,27 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import Any
 
 from lark import Token, Transformer
 
+from closedform.notation.written.building_parts import (
+    ONE,
+    Chain,
+    Part,
+    RefusedError,
+    application,
+    differentiated,
+    folded,
+    only_name,
+    part_of,
+    with_signs,
+)
 from closedform.notation.written.tree import (
     PI,
     Apply,
     Array,
-    Derivative,
     Evaluated,
     Integral,
     Jet,
@@ -23,7 +33,6 @@ from closedform.notation.written.tree import (
     Literal,
     Negation,
     Piecewise,
-    PlusMinus,
     Power,
     Product,
     Quotient,
@@ -32,78 +41,9 @@ from closedform.notation.written.tree import (
     SumOver,
     Symbol,
     Transform,
-    Written,
-    walk,
 )
 
-__all__ = ["DEEPEST", "Building", "Part", "RefusedError"]
-
-DEEPEST = 100
-"""Nodes above each other in one tree."""
-
-ONE = Literal(Fraction(1))
-INVERSES = {
-    **{name: "a" + name for name in ("sin", "cos", "tan", "sinh", "cosh", "tanh")},
-}
-MANY = frozenset({"diag", "max", "min"})
-"""Functions of any number of arguments."""
-
-
-class RefusedError(Exception):
-    """What the grammar lets pass and still is no formula; the text says why and what to do."""
-
-
-@dataclass(slots=True)
-class Part:
-    """A part of the tree and how deep it is; a statement has `members` and `relations`."""
-
-    node: Written
-    depth: int = 1
-    members: tuple[Written, ...] = ()
-    relations: tuple[str, ...] = ()
-
-
-@dataclass(slots=True)
-class _Chain:
-    """Factors from left to right, each with the operator before it and signs behind that."""
-
-    links: list[tuple[str, tuple[str, ...], Part]] = field(default_factory=list)
-
-
-def _part(node: Written, *inside: Part) -> Part:
-    depth = 1 + max((part.depth for part in inside), default=0)
-    if depth > DEEPEST:
-        raise RefusedError(
-            f"the formula is nested more than {DEEPEST} deep; name a part of it and write the name"
-        )
-    return Part(node, depth)
-
-
-def _signed(signs: tuple[str, ...], part: Part) -> Part:
-    for sign in reversed(signs):
-        if sign == "MINUS":
-            part = _part(Negation(part.node), part)
-        elif sign == "PLUS_MINUS":
-            part = _part(PlusMinus(part.node), part)
-        elif sign == "MINUS_PLUS":
-            part = _part(PlusMinus(part.node, -1), part)
-    return part
-
-
-def _apply(function: str, arguments: list[Part], exponent: Part | None = None) -> Part:
-    """Return a function of arguments; sin^-1 is the inverse function, sin^2 the square."""
-    count = 2 if function == "atan2" else 1
-    if function not in MANY and len(arguments) != count:
-        raise RefusedError(
-            f"{function} takes {count} argument{'s'[: count - 1]}, and here are {len(arguments)}"
-        )
-    nodes = tuple(part.node for part in arguments)
-    if exponent is None:
-        return _part(Apply(function, nodes), *arguments)
-    if exponent.node == Negation(ONE) and function in INVERSES:
-        return _part(Apply(INVERSES[function], nodes), *arguments)
-    applied = _part(Apply(function, nodes), *arguments)
-    return _part(Power(applied.node, exponent.node), applied, exponent)
+__all__ = ["Building"]
 
 
 class Building(Transformer[Token, Any]):
@@ -120,30 +60,30 @@ class Building(Transformer[Token, Any]):
     def added(self, children: list[Any]) -> Part:
         parts = [children[0]]
         parts += [
-            _signed((sign,), part)
+            with_signs((sign,), part)
             for sign, part in zip(children[1::2], children[2::2], strict=True)
         ]
-        return _part(Sum(tuple(part.node for part in parts)), *parts)
+        return part_of(Sum(tuple(part.node for part in parts)), *parts)
 
     def signed(self, children: list[Any]) -> Part:
-        return _signed((children[0],), children[1])
+        return with_signs((children[0],), children[1])
 
     def times(self, children: list[Any]) -> tuple[str, tuple[str, ...]]:
         return children[0].type, tuple(children[1:])
 
-    def open(self, children: list[Any]) -> _Chain:
+    def open(self, children: list[Any]) -> Chain:
         return self._chain(children)
 
-    def closed(self, children: list[Any]) -> _Chain:
+    def closed(self, children: list[Any]) -> Chain:
         return self._chain(children)
 
-    def argument(self, children: list[Any]) -> _Chain:
+    def argument(self, children: list[Any]) -> Chain:
         return self._chain(children)
 
-    def _chain(self, children: list[Any]) -> _Chain:
-        chain, operator, signs = _Chain(), "TIMES", ()
+    def _chain(self, children: list[Any]) -> Chain:
+        chain, operator, signs = Chain(), "TIMES", ()
         for child in children:
-            if isinstance(child, _Chain):
+            if isinstance(child, Chain):
                 chain = child
             elif isinstance(child, Part):
                 chain.links.append((operator, signs, child))
@@ -151,26 +91,26 @@ class Building(Transformer[Token, Any]):
                 operator, signs = child
         return chain
 
-    def product(self, children: list[_Chain]) -> Part:
-        return _folded(children[0])
+    def product(self, children: list[Chain]) -> Part:
+        return folded(children[0])
 
     def times_big(self, children: list[Any]) -> Part:
         if len(children) == 2:
             first, last = children
-            return _part(Product((first.node, last.node)), first, last)
-        chain: _Chain = children[0]
+            return part_of(Product((first.node, last.node)), first, last)
+        chain: Chain = children[0]
         chain.links.append((*children[1], children[2]))
-        return _folded(chain)
+        return folded(chain)
 
     def applied(self, children: list[Any]) -> Part:
         exponent = children[2] if len(children) == 4 else None
         last = children[-1]
-        argument = _folded(last) if isinstance(last, _Chain) else last
-        return _apply(children[0].value, [argument], exponent)
+        argument = folded(last) if isinstance(last, Chain) else last
+        return application(children[0].value, [argument], exponent)
 
     def called(self, children: list[Any]) -> Part:
         exponent = children[2] if len(children) == 4 else None
-        return _apply(children[0].value, children[-1], exponent)
+        return application(children[0].value, children[-1], exponent)
 
     def arguments(self, children: list[Any]) -> list[Part]:
         return [child for child in children if isinstance(child, Part)]
@@ -181,7 +121,7 @@ class Building(Transformer[Token, Any]):
             return items[0]
         nodes = tuple(item.node for item in items)
         listed = children[0].value not in ("(", "[")
-        return _part(Listing(nodes) if listed else Array((nodes,)), *items)
+        return part_of(Listing(nodes) if listed else Array((nodes,)), *items)
 
     def group(self, children: list[Any]) -> Part:
         part: Part = children[1]
@@ -192,25 +132,25 @@ class Building(Transformer[Token, Any]):
 
     def power(self, children: list[Any]) -> Part:
         base, exponent = children[0], children[2]
-        return _part(Power(base.node, exponent.node), base, exponent)
+        return part_of(Power(base.node, exponent.node), base, exponent)
 
     def exponential(self, children: list[Any]) -> Part:
-        return _part(Power(children[0].value, children[2].node), children[2])
+        return part_of(Power(children[0].value, children[2].node), children[2])
 
     def postfix(self, children: list[Any]) -> Part:
         part, sign = children[0], children[1].value
         node = part.node
         match sign:
             case "degree":
-                return _part(Product((node, Quotient(PI, Literal(Fraction(180))))), part)
+                return part_of(Product((node, Quotient(PI, Literal(Fraction(180))))), part)
             case "percent":
-                return _part(Quotient(node, Literal(Fraction(100))), part)
+                return part_of(Quotient(node, Literal(Fraction(100))), part)
             case "inverse":
-                return _part(Power(node, Negation(ONE)), part)
+                return part_of(Power(node, Negation(ONE)), part)
             case "adjoint":
-                inner = _part(Apply("transpose", (node,)), part)
-                return _part(Apply("conj", (inner.node,)), inner)
-        return _part(Apply(sign, (node,)), part)
+                inner = part_of(Apply("transpose", (node,)), part)
+                return part_of(Apply("conj", (inner.node,)), inner)
+        return part_of(Apply(sign, (node,)), part)
 
     def jet(self, children: list[Any]) -> Part:
         function, arguments = children[0].value, children[1]
@@ -218,23 +158,23 @@ class Building(Transformer[Token, Any]):
             raise RefusedError(f"{function.name} is a function of the time alone")
         at = arguments[0].node
         instant = None if at == function.at else at
-        return _part(Jet(function.name, function.order, instant), arguments[0])
+        return part_of(Jet(function.name, function.order, instant), arguments[0])
 
     def fraction(self, children: list[Any]) -> Part:
         _, top, bottom = children
-        return _part(Quotient(top.node, bottom.node), top, bottom)
+        return part_of(Quotient(top.node, bottom.node), top, bottom)
 
     def root(self, children: list[Any]) -> Part:
         _, degree, radicand = children
         if degree.node == Literal(Fraction(2)):
-            return _part(Apply("sqrt", (radicand.node,)), radicand)
-        return _part(Power(radicand.node, Quotient(ONE, degree.node)), radicand, degree)
+            return part_of(Apply("sqrt", (radicand.node,)), radicand)
+        return part_of(Power(radicand.node, Quotient(ONE, degree.node)), radicand, degree)
 
     def bars(self, children: list[Any]) -> Part:
-        return _apply("abs", [children[1]])
+        return application("abs", [children[1]])
 
     def norm(self, children: list[Any]) -> Part:
-        return _apply("norm", [children[1]])
+        return application("norm", [children[1]])
 
     def row(self, children: list[Any]) -> list[Part]:
         return children[::2]
@@ -251,8 +191,8 @@ class Building(Transformer[Token, Any]):
                 "give each row as many entries, a zero where there is nothing"
             )
         inside = [part for row in rows for part in row]
-        part = _part(Array(tuple(tuple(entry.node for entry in row) for row in rows)), *inside)
-        return _apply(children[0].value, [part]) if children[0].value else part
+        part = part_of(Array(tuple(tuple(entry.node for entry in row) for row in rows)), *inside)
+        return application(children[0].value, [part]) if children[0].value else part
 
     def piece(self, children: list[Any]) -> tuple[Part, list[Part] | None]:
         conditions = children[2] if len(children) == 3 else None
@@ -278,7 +218,7 @@ class Building(Transformer[Token, Any]):
         )
         inside = [part for part, _ in pieces]
         inside += [c for _, conditions in pieces for c in conditions or ()]
-        return _part(Piecewise(built), *inside)
+        return part_of(Piecewise(built), *inside)
 
     def sum_over(self, children: list[Any]) -> tuple[str, Part, Part]:
         start, upper = children[2], children[4]
@@ -300,80 +240,44 @@ class Building(Transformer[Token, Any]):
         match children[0]:
             case (str(variable), Part() as lower, Part() as upper):
                 node = SumOver(body.node, variable, lower.node, upper.node)
-                return _part(node, body, lower, upper)
+                return part_of(node, body, lower, upper)
             case (str(variable), Part() as point):
-                return _part(Limit(body.node, variable, point.node), body, point)
+                return part_of(Limit(body.node, variable, point.node), body, point)
             case (variable, order, time):
-                return _part(differentiated(body.node, variable, order, time), body)
+                return part_of(differentiated(body.node, variable, order, time), body)
         raise ValueError(children)
 
     def transformed(self, children: list[Any]) -> Part:
         if len(children[1]) != 1:
             raise RefusedError("the transform is that of one function")
-        return _part(Transform(children[1][0].node, children[0].value), children[1][0])
+        return part_of(Transform(children[1][0].node, children[0].value), children[1][0])
 
     def integral(self, children: list[Any]) -> Part:
         body = children[1] if len(children) == 3 else Part(ONE)
-        return _part(Integral(body.node, children[-1].value), body)
+        return part_of(Integral(body.node, children[-1].value), body)
 
     def definite(self, children: list[Any]) -> Part:
         _, lower, upper, *rest, last = children
         body = rest[0] if rest else Part(ONE)
         node = Integral(body.node, last.value, lower.node, upper.node)
-        return _part(node, body, lower, upper)
+        return part_of(node, body, lower, upper)
 
     def evaluated(self, children: list[Any]) -> Part:
         body, bar, _, point, *rest = children
         upper: Part | None = rest[-1] if isinstance(rest[-1], Part) else None
         node, time = body.node, bar.value
         if len(point.members) == 1:
-            name, at = _only_name(node, time) if upper else time, point.node
+            name, at = only_name(node, time) if upper else time, point.node
         elif point.relations == ("=",) and isinstance(point.node, Symbol):
             name, at = point.node.name, point.members[1]
         else:
             raise RefusedError("below the bar there must be a variable and its value: t=0")
         if upper is not None:
-            return _part(Evaluated(node, name, upper.node, at), body, point, upper)
+            return part_of(Evaluated(node, name, upper.node, at), body, point, upper)
         if isinstance(node, Jet) and node.at is None and name == time:
-            return _part(Jet(node.name, node.order, at), body, point)
-        return _part(Evaluated(node, name, at), body, point)
+            return part_of(Jet(node.name, node.order, at), body, point)
+        return part_of(Evaluated(node, name, at), body, point)
 
 
 def _range(part: Part) -> Range:
     return Range(part.members, part.relations)
-
-
-def differentiated(node: Written, variable: str, order: int, time: str) -> Written:
-    """Return the derivative of a body; that of a function of time is a jet again."""
-    if isinstance(node, Jet) and node.at is None and variable == time:
-        return Jet(node.name, node.order + order)
-    return Derivative(node, variable, order)
-
-
-def _only_name(node: Written, time: str) -> str:
-    """Return the variable of a difference of two values of a body that names none."""
-    names = sorted({part.name for part in walk(node) if isinstance(part, Symbol)})
-    if len(names) == 1:
-        return names[0]
-    if not names:
-        return time
-    raise RefusedError("name the variable at the lower bound, as in _{\\tau=0}^{t}")
-
-
-def _folded(chain: _Chain) -> Part:
-    """Return the product of a chain, from left to right."""
-    factors: list[Part] = []
-    for operator, signs, part in chain.links:
-        factor = _signed(signs, part)
-        if operator == "OVER":
-            above = _product(factors)
-            factors = [_part(Quotient(above.node, factor.node), above, factor)]
-        else:
-            factors.append(factor)
-    return _product(factors)
-
-
-def _product(factors: list[Part]) -> Part:
-    if len(factors) == 1:
-        return factors[0]
-    return _part(Product(tuple(factor.node for factor in factors)), *factors)

@@ -15,9 +15,13 @@ __all__ = ["called", "symbol_name"]
 
 ARGUMENTS = frozenset({"s", "lambda", "lamda", "tau", "z", "p", "jomega", "A", "x", "t"})
 """What customary functions are functions of."""
-FUNCTIONS = frozenset("f g h u v w x y z q r p F G H X Y U i".split())
+FUNCTIONS = frozenset(
+    ["f", "g", "h", "u", "v", "w", "x", "y", "z", "q", "r", "p", "F", "G", "H", "X", "Y", "U", "i"]
+)
 """Letters that customarily name a function of time."""
-BEGINS = frozenset("COMMA SEMI ROW_END PERIOD SPACE TEXT WORD IMPLIES REL".split())
+BEGINS = frozenset(
+    ["COMMA", "SEMI", "ROW_END", "PERIOD", "SPACE", "TEXT", "WORD", "IMPLIES", "REL"]
+)
 
 
 def symbol_name(part: Token) -> str:

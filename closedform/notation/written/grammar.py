@@ -55,7 +55,8 @@ from lark import Lark, Token
 from lark.exceptions import UnexpectedToken
 from lark.lexer import Lexer, LexerState
 
-from closedform.notation.written.building import Building, Part, RefusedError
+from closedform.notation.written.building import Building
+from closedform.notation.written.building_parts import Part, RefusedError
 from closedform.notation.written.tree import Written
 
 __all__ = ["StoppedError", "token", "tree_of"]

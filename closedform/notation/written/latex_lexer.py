@@ -187,7 +187,7 @@ def _braced(text: str, after: int, end: int, at: int, command: str) -> tuple[int
 
 
 def matched(raws: list[Raw]) -> dict[int, int]:
-    """Return the index of the partner of every brace and every begin or \\left, both ways.
+    r"""Return the index of the partner of every brace and every begin or \\left, both ways.
 
     Raises:  StopError where one has no partner, or where they are nested too deep.
     """

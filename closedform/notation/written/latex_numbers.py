@@ -52,7 +52,7 @@ def scaled(number: Literal, exponent: int, end: int) -> Literal:
 
 
 def number_at(raws: list[Raw], at: int, end: int) -> tuple[Literal, int]:
-    """Return the number whose first digit or point is at an index, and the index behind it.
+    r"""Return the number whose first digit or point is at an index, and the index behind it.
 
     0{,}25 has a decimal comma and 12\\,000 is a group of thousands; a comma without braces is
     left, since it may part two numbers.
@@ -81,7 +81,7 @@ def number_at(raws: list[Raw], at: int, end: int) -> tuple[Literal, int]:
 def _mark(raws: list[Raw], at: int, end: int) -> int:
     """Return the index behind a decimal sign, or 0 if there is none."""
     texts = [raw.text for raw in raws[at : min(at + 3, end)]]
-    if texts == ["{", ",", "}"] or texts == ["{", ".", "}"]:
+    if texts in (["{", ",", "}"], ["{", ".", "}"]):
         return at + 3
     return at + 1 if texts[:1] == ["."] and raws[at].kind == "char" else 0
 
@@ -111,7 +111,7 @@ def _digits(raws: list[Raw], at: int, end: int) -> tuple[str, int]:
 
 
 def printed_number(raw: Raw, text: str) -> tuple[Literal, bool]:
-    """Return the number in \\num or its like, and whether it is negative.
+    r"""Return the number in \\num or its like, and whether it is negative.
 
     Raises:  StopError if it is no plain number.
     """

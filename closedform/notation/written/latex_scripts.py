@@ -68,7 +68,7 @@ class Scripts:
 
 
 def flattened(raws: list[Raw]) -> str:
-    """Return a subscript as the end of a name: \\mathrm{n},1 is n_1, and 1/2 is 1_2.
+    r"""Return a subscript as the end of a name: \\mathrm{n},1 is n_1, and 1/2 is 1_2.
 
     Raises:  StopError at a sign that no name has.
     """

@@ -108,7 +108,7 @@ class LatexSource(LatexCommands):
         return out
 
     def braced(self, at: int, end: int) -> list[Token]:
-        """Return the tokens of \\left\\{ array \\right. if its second column holds conditions."""
+        r"""Return the tokens of \\left\\{ array \\right. if its second column holds conditions."""
         while at < end and self.raws[at].kind == "command" and self.raws[at].text in SPACES:
             at += 1
         if at >= end or self.raws[at].kind != "begin" or self.partners[at] != end - 1:

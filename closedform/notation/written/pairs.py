@@ -11,13 +11,37 @@ from closedform.notation.written.written_errors import StopError, UnbalancedErro
 __all__ = ["OPERAND_ENDS", "OPERAND_STARTS", "bounds", "pairs"]
 
 OPERAND_ENDS = frozenset(
-    "NUMBER ATOM CLOSE GROUP_CLOSE BAR_CLOSE NORM_CLOSE MATRIX_CLOSE CASES_CLOSE POSTFIX "
-    "UNIT DIFFERENTIAL".split()
+    [
+        "NUMBER",
+        "ATOM",
+        "CLOSE",
+        "GROUP_CLOSE",
+        "BAR_CLOSE",
+        "NORM_CLOSE",
+        "MATRIX_CLOSE",
+        "CASES_CLOSE",
+        "POSTFIX",
+        "UNIT",
+        "DIFFERENTIAL",
+    ]
 )
 """Types of tokens with which an operand can end."""
 OPERAND_STARTS = frozenset(
-    "NUMBER ATOM EULER CALL FUNCTION FRACTION ROOT OPEN GROUP_OPEN BAR_OPEN NORM_OPEN MATRIX_OPEN "
-    "MINUS".split()
+    [
+        "NUMBER",
+        "ATOM",
+        "EULER",
+        "CALL",
+        "FUNCTION",
+        "FRACTION",
+        "ROOT",
+        "OPEN",
+        "GROUP_OPEN",
+        "BAR_OPEN",
+        "NORM_OPEN",
+        "MATRIX_OPEN",
+        "MINUS",
+    ]
 )
 """Types of tokens with which an entry of a row can begin."""
 

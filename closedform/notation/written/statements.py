@@ -54,12 +54,12 @@ def statements_of(tokens: Sequence[Token], names: Names, text: str) -> tuple[Sta
     drafts: list[Draft] = []
     early: list[str] = []
     conditions: list[list[Token]] = []
-    for marks, part in _segments(tokens):
+    for marks, segment in _segments(tokens):
         notes = [str(mark.value) for mark in marks if mark.type == "TEXT"]
         (drafts[-1].notes if drafts else early).extend(notes)
         kinds = {mark.type for mark in marks}
         words = {str(mark.value) for mark in marks if mark.type == "WORD"}
-        part, beside = _condition_behind(part)
+        part, beside = _condition_behind(segment)
         if not part:
             pass
         elif drafts and _joins(drafts[-1], marks, part):
