@@ -258,17 +258,11 @@ def judge_canonical(claim: Claim, setting: Setting) -> Finding:
             return Finding(
                 "fails", f"it is {rows} by {columns}, the matrix A has {ground.size} rows"
             )
-        if not is_similar(matrix, ground) and has_decimals(opened):
-            if exact_form(matrix, ground) is not None:
-                last = held_against(
-                    claim,
-                    setting,
-                    lambda g, m=member: exact_form(matrix_value(m, setting, g), g) or g.matrix,
-                    values=(member,),
-                )
-                if not last.passes:
-                    return last
-                continue
+        if has_decimals(opened) and exact_form(matrix, ground) is not None:
+            last = _rounded_form(claim, member, setting)
+            if not last.passes:
+                return last
+            continue
         if not is_similar(matrix, ground):
             return Finding("fails", "it is not similar to A", right(ground))
         if not is_block_form(matrix):
@@ -277,6 +271,18 @@ def judge_canonical(claim: Claim, setting: Setting) -> Finding:
     if last is None:
         raise NotJudgedError("no matrix is given")
     return last
+
+
+def _rounded_form(claim: Claim, member: Written, setting: Setting) -> Finding:
+    """Judge the digits of a canonical form that stands for an exact one."""
+
+    def true(ground: Ground) -> Value:
+        form = exact_form(matrix_value(member, setting, ground), ground)
+        if form is None:
+            raise NotJudgedError("it is not told which form its numbers stand for")
+        return form
+
+    return held_against(claim, setting, true, values=(member,))
 
 
 def _in_order(matrix: ExactMatrix, setting: Setting, ground: Ground) -> bool:
@@ -324,7 +330,7 @@ def _transformation(
     except ZeroDivisionError:
         return Finding("fails", "it has no inverse")
     if has_decimals(member):
-        finding = _rounded_columns(member, ground)
+        finding = _rounded_columns(member, setting, ground)
         if finding is not None:
             return finding
     product = inverse @ ground.matrix @ matrix
