@@ -64,7 +64,7 @@ def _put(tree: Written, old: Written, new: Written) -> Written:
 def other_names(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with another name of a number in one place, or everywhere."""
     setting = trial.setting
-    known = [*trial.ground.truth.parameters, *setting.author.definitions][:MOST_NAMES]
+    known = [*setting.ground.truth.parameters, *setting.author.definitions][:MOST_NAMES]
     used = {s.node.name for s in trial.spots() if isinstance(s.node, Symbol)} & set(known)
     for spot in trial.spots():
         if isinstance(spot.node, Symbol) and spot.node.name in known:
