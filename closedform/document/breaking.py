@@ -7,6 +7,7 @@ denominator times its numerator, a number between its digits.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from fractions import Fraction
 
 from closedform.derivation.step import Matrix, Side, Symbol
@@ -21,7 +22,7 @@ from closedform.notation.expression import (
     Sum,
     product,
 )
-from closedform.notation.latex.box import BINARY, Box, joined
+from closedform.notation.latex.box import BINARY, Box, bracketed, joined
 from closedform.notation.latex.formula import factors_of, formula, signed, terms_of
 
 __all__ = ["filled", "pieces"]
@@ -48,6 +49,8 @@ def _after_sign(box: Box, sign: str) -> Box:
 
 
 def _after_dot(box: Box) -> Box:
+    if box.latex[0].isdigit():  # beside another number a space would not tell them apart
+        return Box(rf" \cdot {box.latex}", box.width + 0.75, box.height, start="{}")
     return Box(rf"\,{box.latex}", box.width + 0.2, box.height, start=r"{}\cdot")
 
 
@@ -101,7 +104,7 @@ def _of_product(whole_product: Product, room: float) -> list[Box]:
     widest = widths.index(max(widths))
     found: list[Box] = []
     if widest:
-        found.append(formula(product(factors[:widest])))
+        found.append(_side_by_side(factors[:widest]))
     middle = factors[widest]
     if isinstance(middle, Sum | Negation):
         opened = _in_brackets(middle, room)
@@ -112,8 +115,15 @@ def _of_product(whole_product: Product, room: float) -> list[Box]:
         opened = _opened(middle, room)
         found += [_after_dot(opened[0]), *opened[1:]] if found else opened
     if widest + 1 < len(factors):
-        found.append(_after_dot(formula(product(factors[widest + 1 :]))))
+        found.append(_after_dot(_side_by_side(factors[widest + 1 :])))
     return found
+
+
+def _side_by_side(factors: Sequence[Expression]) -> Box:
+    """Return the factors beside those that are broken, in brackets if they would run into these."""
+    whole = product(factors)
+    box = formula(whole)
+    return bracketed(box) if isinstance(whole, Sum) or box.latex.startswith("-") else box
 
 
 def _led(head: Box, following: list[Box]) -> list[Box]:

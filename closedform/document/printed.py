@@ -52,12 +52,13 @@ class Printed:
     decimals: dict[str, str] = slot(default_factory=dict)
     words: set[str] = slot(default_factory=set)
 
-    def clear(self) -> None:
-        """Forget everything, before another pass."""
-        for kept in (self.displays, self.tables):
-            kept.clear()
-        for known in (self.formulas, self.decimals, self.words):
-            known.clear()
+    def next_pass(self) -> None:
+        """Forget what has a place in the document; it is printed anew.
+
+        Formulas are kept: Jinja works out a filter of a constant just once.
+        """
+        self.displays.clear()
+        self.tables.clear()
 
     def display(self, statement: Statement, label: str, by: str) -> Display:
         """Return a statement as a display, as `displayed` does."""

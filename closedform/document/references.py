@@ -32,7 +32,7 @@ class References:
         """Keep what this pass has found and begin the next."""
         self.asked_before, self.set_before = frozenset(self.asked), frozenset(self.set)
         self.asked, self.set = set(), set()
-        self.printed.clear()
+        self.printed.next_pass()
 
     def display(self, statement: Statement, label: str = "", by: str = "auto") -> Display:
         """Return the statement as a display, numbered if some sentence refers to `label`."""

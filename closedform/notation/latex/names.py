@@ -68,8 +68,8 @@ NAME = re.compile(
     r"(?P<base>[A-Za-z]+)(?P<digits>([0-9][A-Za-z0-9]*)?)(?P<rest>(_[A-Za-z0-9]+)*?)"
     r"(_(?P<dots>d{0,3})dot|_dot(?P<order>[1-9][0-9]?))?(?P<primes>'*)"
 )
-DECIMAL = re.compile(r"[0-9]+\.[0-9]+")
-"""A number in the place of a name: a decimal keeps its digits."""
+DECIMAL = re.compile(r"[0-9]+(?:\.[0-9]+)?")
+"""A number in the place of a name: it keeps its digits."""
 DOTS = (r"\dot", r"\ddot", r"\dddot")
 """Accents of the first derivatives with respect to the time; later ones have a number."""
 TIMES = frozenset({"t", "tau", "time"})
@@ -102,7 +102,7 @@ def subscripted(base: Box, indices: tuple[str, ...], style: Style) -> Box:
 def letter_box(text: str, style: Style = Style.DISPLAY, *, bold: bool = False) -> Box:
     """Return one letter or word without indices, bold italic for matrices and vectors.
 
-    A decimal is set as the number that it is.
+    A number is set as such.
     """
     if DECIMAL.fullmatch(text):
         return plain(text, _width(text), style)

@@ -1,0 +1,314 @@
+"""A normal form of written formulas that undoes what printing and reading may do, and no more.
+
+Factors lose their order unless they are matrices, terms theirs; numbers that multiply are
+gathered into one, like terms are added; a sign and a number common to a bracket come out of
+it; a factor before a matrix goes into its entries.  Brackets are not multiplied out, so the
+form of a formula is not much longer than the formula.  Formulas with the same form are equal.
+
+A value is a set of terms.  A term has factors that are numbers, each a base with a whole
+exponent, factors that are matrices in their order, and a rational coefficient.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Callable, Hashable, Iterable
+from fractions import Fraction
+from math import gcd, lcm
+from typing import Any, cast
+
+from closedform.notation.latex.names import printed_key
+from closedform.notation.written.tree import (
+    EULER,
+    IMAGINARY,
+    Apply,
+    Array,
+    Constant,
+    Derivative,
+    Evaluated,
+    Identity,
+    Integral,
+    Jet,
+    Limit,
+    Listing,
+    Literal,
+    Negation,
+    Piecewise,
+    PlusMinus,
+    Power,
+    Product,
+    Quotient,
+    Range,
+    Sum,
+    SumOver,
+    Symbol,
+    Transform,
+    Written,
+)
+
+__all__ = [
+    "BOLD",
+    "UPRIGHT_I",
+    "Value",
+    "atom",
+    "entries_of",
+    "exponential",
+    "inverted",
+    "named",
+    "normal",
+    "number",
+    "plus",
+    "raised",
+    "times",
+]
+
+Value = frozenset[tuple[tuple[frozenset[tuple[Hashable, int]], tuple[Hashable, ...]], Fraction]]
+"""Terms: factors with their exponents, matrices in order, and the coefficient."""
+Rows = tuple[tuple[Value, ...], ...]
+
+NO_FACTORS: tuple[frozenset[tuple[Hashable, int]], tuple[Hashable, ...]] = (frozenset(), ())
+LARGEST_POWER = 4096
+"""A number to a higher exponent is not worked out."""
+
+BOLD = "boldface"
+"""Begins the name of a matrix or vector, so that it is not taken for that of a number."""
+UPRIGHT_I = "uprighti"
+"""The number i where a name is an i, too."""
+
+DECIMAL = re.compile(r"[0-9]+(?:\.[0-9]+)?")
+OF_MATRICES = frozenset({"transpose", "inverse", "adj", "diag"})
+
+
+def normal(node: Written) -> Value:
+    """Return the normal form of a formula or matrix."""
+    return FORMS[type(node)](node)
+
+
+def number(value: Fraction | int) -> Value:
+    """Return the form of a rational number."""
+    return frozenset({(NO_FACTORS, Fraction(value))}) if value else frozenset()
+
+
+def atom(base: Hashable, *, matrix: bool = False) -> Value:
+    """Return the form of something that is not taken apart."""
+    key = (frozenset(), (base,)) if matrix else (frozenset({(base, 1)}), ())
+    return frozenset({(key, Fraction(1))})
+
+
+def named(text: str, *, bold: bool = False, argument: Value | None = None) -> Value:
+    """Return the form of a name, or of what it is at an argument that is not the time."""
+    if text.startswith(BOLD) and text != BOLD:
+        text, bold = text.removeprefix(BOLD), True
+    key = printed_key(text.replace("_hat", "hat").replace(",", "_").replace("-", "minus"))
+    base = ("name", key, bold) if argument is None else ("at", key, bold, argument)
+    return atom(base, matrix=bold)
+
+
+def times(values: Iterable[Value]) -> Value:
+    """Return the form of a product."""
+    coefficient = Fraction(1)
+    factors: dict[Hashable, int] = {}
+    matrices: list[Hashable] = []
+    for value in values:
+        if not value:
+            return value
+        scale, powers, ordered = _as_factor(value)
+        coefficient *= scale
+        for base, exponent in powers:
+            factors[base] = factors.get(base, 0) + exponent
+        matrices += ordered
+    key = frozenset((base, exponent) for base, exponent in factors.items() if exponent)
+    return _into_array(key, tuple(matrices), coefficient)
+
+
+def entries_of(value: Value) -> Rows | None:
+    """Return the entries of a form that is one matrix, row by row; None if it is none."""
+    if len(value) != 1:
+        return None
+    (((factors, matrices), coefficient),) = value
+    if factors or coefficient != 1 or len(matrices) != 1:
+        return None
+    return _rows_of(matrices[0])
+
+
+def _rows_of(base: Hashable) -> Rows | None:
+    """Return the entries of a matrix that is written out."""
+    match base:
+        case ("array", rows):
+            return cast("Rows", rows)
+    return None
+
+
+def _as_factor(
+    value: Value,
+) -> tuple[Fraction, frozenset[tuple[Hashable, int]], tuple[Hashable, ...]]:
+    """Return a form as coefficient, factors and matrices: a sum is one factor."""
+    if len(value) == 1:
+        (((factors, matrices), coefficient),) = value
+        return coefficient, factors, matrices
+    content = _content(coefficient for _, coefficient in value)
+    base = ("sum", frozenset((key, coefficient / content) for key, coefficient in value))
+    if any(matrices for (_, matrices), _ in value):
+        return content, frozenset(), (base,)
+    return content, frozenset({(base, 1)}), ()
+
+
+def _content(coefficients: Iterable[Fraction]) -> Fraction:
+    """Return the positive number that leaves whole numbers without a common divisor."""
+    values = list(coefficients)
+    above = gcd(*(abs(value.numerator) for value in values))
+    return Fraction(above, lcm(*(value.denominator for value in values)))
+
+
+def _into_array(
+    factors: frozenset[tuple[Hashable, int]], matrices: tuple[Hashable, ...], scale: Fraction
+) -> Value:
+    """Return a term; what multiplies a matrix that is written out goes into its entries."""
+    if factors or scale != 1:
+        front = frozenset({((factors, ()), scale)})
+        for place, matrix in enumerate(matrices):
+            rows = _rows_of(matrix)
+            if rows is not None:
+                inside = tuple(tuple(times((front, entry)) for entry in row) for row in rows)
+                ordered = (*matrices[:place], ("array", inside), *matrices[place + 1 :])
+                return frozenset({((frozenset(), ordered), Fraction(1))})
+    return frozenset({((factors, matrices), scale)})
+
+
+def plus(values: Iterable[Value]) -> Value:
+    """Return the form of a sum."""
+    terms: dict[Any, Fraction] = {}
+    for value in values:
+        for key, coefficient in value:
+            terms[key] = terms.get(key, Fraction(0)) + coefficient
+    return frozenset((key, coefficient) for key, coefficient in terms.items() if coefficient)
+
+
+def _whole(value: Value) -> int | None:
+    """Return a form that is a whole number as one."""
+    if not value:
+        return 0
+    if len(value) == 1:
+        ((key, coefficient),) = value
+        if key == NO_FACTORS and coefficient.denominator == 1:
+            return int(coefficient)
+    return None
+
+
+def raised(base: Value, exponent: Value) -> Value:
+    """Return the form of a power."""
+    size = _whole(exponent)
+    if base and size is not None and abs(size) <= LARGEST_POWER:
+        scale, factors, matrices = _as_factor(base)
+        if not matrices:
+            key = frozenset((inner, power * size) for inner, power in factors if power * size)
+            return frozenset({((key, ()), scale**size)})
+    return atom(("power", base, exponent), matrix=_is_matrix(base))
+
+
+def inverted(value: Value) -> Value:
+    """Return the form of one over something, a number or a matrix."""
+    return raised(value, number(-1))
+
+
+def exponential(exponent: Value) -> Value:
+    """Return the form of e to an exponent, a number or a matrix."""
+    return atom(("exp", exponent), matrix=_is_matrix(exponent))
+
+
+def _is_matrix(value: Value) -> bool:
+    return any(matrices for (_, matrices), _ in value)
+
+
+def _literal(node: Literal) -> Value:
+    if not node.is_decimal:
+        return number(node.value)
+    # 1.25e-7 and 1.25 times 10^-7 are one: the digits printed, and a power of ten
+    digits = ("digits", node.value / node.last_place)
+    return times((number(node.last_place), atom(digits)))
+
+
+def _symbol(node: Symbol) -> Value:
+    if DECIMAL.fullmatch(node.name):
+        places = len(node.name.partition(".")[2])
+        last = Fraction(1, 10**places)
+        return _literal(Literal(Fraction(node.name), last, is_decimal=places > 0))
+    if node.name == UPRIGHT_I:
+        return normal(IMAGINARY)
+    return named(node.name, bold=node.bold)
+
+
+def _jet(node: Jet) -> Value:
+    text = node.name + "'" * node.order
+    return named(text, argument=None if node.at is None else normal(node.at))
+
+
+def _power(node: Power) -> Value:
+    exponent = normal(node.exponent)
+    if node.base == EULER:
+        return exponential(exponent)
+    return raised(normal(node.base), exponent)
+
+
+def _apply(node: Apply) -> Value:
+    arguments = tuple(map(normal, node.arguments))
+    match node.function, arguments:
+        case "sqrt", (argument,):
+            return raised(argument, number(Fraction(1, 2)))
+        case "exp", (argument,):
+            return exponential(argument)
+        case "inverse", (argument,):
+            return inverted(argument)
+    return atom((node.function, *arguments), matrix=node.function in OF_MATRICES)
+
+
+def _quotient(node: Quotient) -> Value:
+    return times((normal(node.numerator), inverted(normal(node.denominator))))
+
+
+def _array(node: Array) -> Value:
+    rows = tuple(tuple(map(normal, row)) for row in node.rows)
+    return atom(("array", rows), matrix=True)
+
+
+def _range(node: Range) -> Hashable:
+    return (tuple(map(normal, node.members)), node.signs)
+
+
+def _piecewise(node: Piecewise) -> Value:
+    pieces = tuple(
+        (normal(value), None if where is None else tuple(map(_range, where)))
+        for value, where in node.pieces
+    )
+    return atom(("cases", pieces))
+
+
+def _opaque(node: Any) -> Value:
+    """Return the form of what this program prints in no formula: it equals itself only."""
+    return atom(("as written", node))
+
+
+FORMS: dict[type[Any], Callable[[Any], Value]] = {
+    Literal: _literal,
+    Constant: lambda node: atom(("constant", node.name)),
+    Symbol: _symbol,
+    Jet: _jet,
+    Negation: lambda node: times((number(-1), normal(node.operand))),
+    PlusMinus: lambda node: atom(("both signs", normal(node.operand), node.upper)),
+    Sum: lambda node: plus(map(normal, node.terms)),
+    Product: lambda node: times(map(normal, node.factors)),
+    Quotient: _quotient,
+    Power: _power,
+    Apply: _apply,
+    Array: _array,
+    Identity: lambda _: named("I", bold=True),
+    Listing: lambda node: atom(("list", tuple(map(normal, node.items)))),
+    Range: lambda node: atom(("range", _range(node))),
+    Piecewise: _piecewise,
+    Integral: _opaque,
+    SumOver: _opaque,
+    Limit: _opaque,
+    Transform: _opaque,
+    Evaluated: _opaque,
+    Derivative: lambda node: atom(("derivative", normal(node.body), node.variable, node.order)),
+}
