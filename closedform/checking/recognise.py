@@ -83,11 +83,18 @@ def _stated(
             known = named.subject
         if not known and left is not None and left.says in ("solution", "output", "value"):
             known = left.subject
+        known = known or _called(statement, subject)
         instant = at if at is not None else (left.at if left is not None else None)
         sign = left.sign if left is not None else 1
         claim = _claim(line, statement, Left(says, known, instant, sign), facts, of, instant)
         claims.append(replace(claim, stated=True))
     return tuple(claims)
+
+
+def _called(statement: Statement, subject: str) -> str:
+    """Return the name of something that the model does not have, for it to be told so."""
+    first = statement.members[0]
+    return first.name if isinstance(first, Jet) and len(statement.members) > 1 else subject
 
 
 def _known_subject(subject: str, facts: Facts) -> str:
