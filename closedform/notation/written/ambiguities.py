@@ -163,7 +163,8 @@ def _replaced(
         if part is chosen[0]:
             behind = index + len(chosen)
             whole = (*tokens[:index], *other, *tokens[behind:])
-            return Choice(whole, *bounds(chosen[0], tokens[min(behind, len(tokens)) - 1]))
+            places = [bounds(one) for one in tokens[index:behind]]
+            return Choice(whole, min(places)[0], max(end for _, end in places))
     return None
 
 

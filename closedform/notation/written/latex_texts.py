@@ -18,7 +18,7 @@ from closedform.notation.written.macros import (
     FUNCTION_WORDS,
 )
 from closedform.notation.written.pairs import OPERAND_ENDS
-from closedform.notation.written.tree import EULER, Literal
+from closedform.notation.written.tree import EULER, Constant, Literal
 from closedform.notation.written.words import word_of
 
 __all__ = ["LatexTexts"]
@@ -85,7 +85,7 @@ class LatexTexts(LatexParts):
             return at
         following = self.raws[stop].text if stop < end else ""
         single = self.raws[at].kind == "command" and len(found) == 1
-        if before.type != "NUMBER":
+        if not _is_number(out):
             word = found if found.isalnum() else ""
             ends = stop >= end or self.raws[stop].kind in ("row", "&", "}", "text")
             ends = ends or following in (",", ";", ".", "=", "quad", "qquad", "approx", " ", ")")
@@ -194,6 +194,18 @@ class LatexTexts(LatexParts):
             return None
         low, high, behind = self.argument(at + 1, end, raw)
         return low, high, behind, "mathbf" if raw.text in BOLD else "mathrm"
+
+
+def _is_number(tokens: list[Token]) -> bool:
+    """Tell whether what stands behind the last relation is a number, with no name in it."""
+    for part in reversed(tokens):
+        if part.type in PARTING or part.type in ("PLUS", "MINUS"):
+            return True
+        if part.type in ("CALL", "INTEGRAL", "CASES_OPEN", "UNIT"):
+            return part.type == "UNIT"
+        if part.type == "ATOM" and not isinstance(part.value, Constant):
+            return False
+    return True
 
 
 def _unit_of(text: str) -> str:

@@ -53,10 +53,11 @@ def read_latex(text: str, declared: Declared, *, place: Place = NOWHERE) -> Read
     Raises:  NotReadError, of the kinds in `written_errors`, for whatever is not known: nothing
              is guessed.  Its place is that of the part which cannot be read.
 
-    >>> reading = read_latex(r"x(0)=\tfrac12", Declared(states=frozenset({"x"})))
-    >>> reading.statements[0].members[0]
-    Jet(name='x', order=0, at=Literal(value=Fraction(0, 1), last_place=Fraction(1, 1), \
-is_decimal=False, start=2, end=3))
+    >>> reading = read_latex(r"\dot x(0)=\sqrt{k},\ k=2", Declared(states=frozenset({"x"})))
+    >>> [len(statement.members) for statement in reading.statements]
+    [2, 2]
+    >>> reading.statements[0].members[0].order, reading.statements[0].members[1]
+    (1, Apply(function='sqrt', arguments=(Symbol(name='k', bold=False),)))
     """
     if len(text) > LONGEST:
         raise WrittenLengthError(place, len(text), LONGEST)
