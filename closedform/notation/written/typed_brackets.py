@@ -46,6 +46,8 @@ class Brackets:
                 return "cases"
             return "listing" if commas or rows else "group"
         if value == "(":
+            if commas and self._nested(k, "(") is not None:
+                return "nested"
             return "column" if commas or rows else "group"
         if self._nested(k) is not None:
             return "nested"
@@ -67,11 +69,12 @@ class Brackets:
         text = self.signs.text[after[-1].start : after[-1].start + 2].strip("{")
         return after[0].kind == "POWER" and text[:1] == "T"
 
-    def _nested(self, k: int) -> list[Span] | None:
+    def _nested(self, k: int, bracket: str = "[") -> list[Span] | None:
         """Return the rows of a bracket that holds nothing but rows in brackets, else None."""
         parts = self._filled(k + 1, self.signs.pairs[k], ("COMMA", *ROW_ENDS))
         whole = all(
-            self.signs.all[b].value == "[" and self.signs.pairs.get(b) == e - 1 for b, e in parts
+            self.signs.all[b].value == bracket and self.signs.pairs.get(b) == e - 1
+            for b, e in parts
         )
         return [(b + 1, e - 1) for b, e in parts] if parts and whole else None
 
@@ -141,7 +144,11 @@ class Brackets:
                 return
             yield from self._list(parts, ("MATRIX_OPEN", "ROW", "MATRIX_CLOSE"), "", bounds)
             return
-        rows = self._nested(k) if shape == "nested" else self._filled(k + 1, close, ROW_ENDS)
+        rows = (
+            self._nested(k, str(self.signs.all[k].value))
+            if shape == "nested"
+            else self._filled(k + 1, close, ROW_ENDS)
+        )
         yield token("MATRIX_OPEN", "", bounds[0], bounds[0] + 1)
         for place, (begin, stop) in enumerate(rows or ()):
             if place:

@@ -15,6 +15,7 @@ __all__ = ["Chunk", "Parting"]
 SEPARATORS = ("SEMICOLON", "NEWLINE", "COMMA", "AND")
 JOINING = frozenset({"REL", "PLUS", "MINUS", "PLUS_MINUS", "MINUS_PLUS", "TIMES", "OVER", "POWER"})
 FILLERS = frozenset({"so", "thus", "hence", "therefore", "then", "also", "with", "that", "is"})
+LABELS = frozenset({"eigenvalue", "eigenvalues", "root", "roots", "pole", "poles"})
 NOTE = re.compile(
     r"(?:double|twice|triple|repeated|simple|multiplicity|mult\.?|\d[- ]?fold|\(?algebraic)[^;=]*",
     re.IGNORECASE,
@@ -83,8 +84,8 @@ class Parting:
 
     def _names_value(self, begin: int) -> bool:
         """Whether a name and an equals sign begin a statement of their own."""
-        follows = next((s for s in self.signs.all[begin:] if s.kind == "REL"), None)
-        return follows is not None and follows.value in ("=", "≈")
+        follows = next((s for s in self.signs.all[begin:] if s.kind in ("REL", "WHEN")), None)
+        return follows is not None and follows.value not in ("<", "≤", ">", "≥", "→")
 
     def _without_words(self, begin: int, stop: int) -> tuple[int, int, str]:
         """Return a stretch without the words around it, and the note among these."""
@@ -98,6 +99,9 @@ class Parting:
         while begin < stop and self.signs.inside(begin, begin + 1).lower() in FILLERS:
             if self._is_declared(begin):
                 break
+            begin += 1
+        if self._is_label(begin, stop):
+            notes.append(self.signs.inside(begin, begin + 1))
             begin += 1
         while stop > begin and self.signs.all[stop - 1].kind == "STOP":
             stop -= 1
@@ -113,6 +117,12 @@ class Parting:
             notes.append(self.signs.inside(k, stop))
             stop = k
         return begin, stop, " ".join(notes)
+
+    def _is_label(self, k: int, stop: int) -> bool:
+        """Whether a word says what the values behind it are: eigenvalues -1, -3."""
+        word = self.signs.inside(k, min(k + 1, stop)).lower()
+        named = self.signs.kind(k + 1, stop) == "REL" or k + 1 >= stop
+        return word in LABELS and not named and not self._is_declared(k)
 
     def _last(self, stop: int) -> int:
         return self.signs.all[stop - 1].end

@@ -31,7 +31,7 @@ from closedform.notation.written.typed_words import FUNCTION_WORDS, Piece, Words
 
 __all__ = ["Lexeme", "Scanner", "StrayError"]
 
-POWER_OF_D = r"(?:(?:\^|\*\*)\s*\(?\s*([1-9])\s*\)?|([²³⁴]))?"
+POWER_OF_D = r"(?:(?:\^|\*\*)?\s*\(?\s*([1-9])\s*\)?|([²³⁴]))?"
 INDICES = re.compile(r"(?:,\s?[0-9₀-₉])+(?=\s*(?:[=≈~∈]|:=))")
 LABEL = re.compile(r"\{(?P<inside>[A-Za-z0-9, ]+)\}")
 SIGNS = sorted({*OPERATORS, *RELATIONS}, key=lambda sign: (-len(sign), sign))
@@ -136,6 +136,9 @@ class Scanner:
             yield from self._other(sign, at)
 
     def _other(self, sign: str, at: int) -> Iterator[Lexeme]:
+        if sign == "∈" and self.text[at + 1 :].lstrip()[:1] == "{":
+            yield Lexeme("REL", "=", at, at + 1)
+            return
         if sign == "|" and self.text[at : at + 2] == "||":
             yield Lexeme("DOUBLE_BAR", "||", at, at + 2)
             return
@@ -216,6 +219,9 @@ class Scanner:
             digits = re.findall("[0-9₀-₉]", indices[0])
             word = "_".join([re.sub(r"(?<=[^\W\d_])(?=[0-9])", "_", word, count=1), *digits])
             end = indices.end()
+        if word == "in" and re.match(r"\s*\{", self.text[end:]):
+            yield Lexeme("REL", "=", at, end)
+            return
         keyword = KEYWORDS.get(word.lower())
         if keyword and self.words.name(word) is None and not (before and before[-1].kind == "LOW"):
             yield Lexeme(keyword, word, at, end)
@@ -229,6 +235,8 @@ class Scanner:
             re.match(r"\s*(?:\^|\*\*|[⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺ᵗˢⁿ⁽])", self.text[end : end + 9]) is not None
         )
         pieces = self.words.read(word, at, bracket=bracket, raised=raised)
+        if pieces is None and re.fullmatch("(?:int|integral|sum|prod)(?:_.*)?", word):
+            raise StrayError(at, word, _why_stray("∫"))
         if pieces is None:
             new = self.words.undeclared(word, at)
             yield Lexeme("ATOM" if spelled_out(word)[0].isascii() else "TEXT", new.node, at, end)

@@ -85,6 +85,9 @@ class Weaver(Doubtful):
         close = self.signs.pairs[k + 1]
         if node.name in ("piecewise", "Piecewise", "cases"):
             return self._pieces(k, close)
+        listed = self.signs.all[k + 2].value == "[" and self.signs.pairs.get(k + 2) == close - 1
+        if node.name in ("Matrix", "matrix", "array", "mat") and listed:
+            return self._inside(k + 2, close)
         size = self.signs.all[k + 2].value
         if node.name == "eye" and isinstance(size, Literal) and close == k + 3:
             return self._just("ATOM", Identity(int(size.value)), k, close + 1)
@@ -93,6 +96,10 @@ class Weaver(Doubtful):
     def _just(self, kind: str, value: object, k: int, after: int) -> Steps:
         yield token(kind, value, self.signs.all[k].start, self.signs.all[after - 1].end)
         return after
+
+    def _inside(self, k: int, close: int) -> Steps:
+        yield from self.tokens(k, close)
+        return close + 1
 
     def _pieces(self, k: int, close: int) -> Steps:
         yield from self._cases(k + 2, close)
