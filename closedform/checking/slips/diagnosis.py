@@ -19,6 +19,7 @@ from closedform.checking.slips.edits import (
     term_signs,
 )
 from closedform.checking.slips.factors import constants, factors, left_out, normalised
+from closedform.checking.slips.lost_factors import inverted, missing_times, missing_waves
 from closedform.checking.slips.matrix_slips import inverses, rearranged, swapped_products
 from closedform.checking.slips.motion import derivatives, forced_signs, parts
 from closedform.checking.slips.narrowing import narrowed
@@ -53,6 +54,7 @@ OF_PLACES: tuple[Source, ...] = (
     term_signs,
     sine_signs,
     chains,
+    missing_times,
     angles,
     functions,
     delays,
@@ -62,10 +64,19 @@ LATER: tuple[Source, ...] = (
     parts,
     derivatives,
     constants,
+    missing_waves,
     eigenvectors,
     transformations,
 )
-LAST: tuple[Source, ...] = (other_names, root_numbers, one_number, left_out, extra_terms, factors)
+LAST: tuple[Source, ...] = (
+    inverted,
+    other_names,
+    root_numbers,
+    one_number,
+    left_out,
+    extra_terms,
+    factors,
+)
 """Where candidates come from, the most specific first; of places once more in one entry only."""
 OUTSIDE = (NotJudgedError, NotElementaryError, NoValueError, ArithmeticError)
 
@@ -114,7 +125,7 @@ def _reason(claim: Claim, finding: Finding, trials: list[Trial]) -> str:
 def _first(trial: Trial, source: Source) -> Slip | None:
     try:
         for candidate in source(trial):
-            if trial.mends(candidate.tree):
+            if trial.mends(candidate):
                 return Slip(candidate.name, candidate.where, trial.back(candidate.tree))
     except OUTSIDE:
         return None

@@ -6,7 +6,7 @@ from collections.abc import Callable, Iterator
 from fractions import Fraction
 
 from closedform.checking.slips import names
-from closedform.checking.slips.making import ONE, contains, negated, number, over, times
+from closedform.checking.slips.making import ONE, ZERO, contains, negated, number, over, times
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed, wave_above, waves_in
@@ -14,6 +14,7 @@ from closedform.notation.written.tree import (
     EULER,
     PI,
     Apply,
+    Array,
     Literal,
     Negation,
     Power,
@@ -60,6 +61,8 @@ def _turned(trial: Trial, spot: Spot) -> Iterator[Change]:
             term = node.terms[k]
             turned = Sum((*node.terms[:k], negated(term), *node.terms[k + 1 :]))
             yield _term_sign(trial, spot, term), part_text(term), turned
+    if isinstance(spot.outer, Array) and spot.path != trial.start and node != ZERO:
+        yield _entry_sign(trial, spot), "", negated(node)
     if isinstance(node, Power) and node.base == EULER:
         new = Power(EULER, negated(node.exponent))
         yield names.SIGN_EXPONENT, "the exponential", new
@@ -80,6 +83,14 @@ def _whole_sign(trial: Trial, node: Written) -> str:
         "eigenvalues": names.SIGN_EIGENVALUE,
         "phase": names.SIGN_PHASE,
     }.get(claim.says, names.SIGN_OVERALL)
+
+
+def _entry_sign(trial: Trial, spot: Spot) -> str:
+    place = spot.path[-1][1]
+    diagonal = len(place) > 1 and place[0] == place[1]
+    if trial.claim.says in ("J", "real form") and diagonal:
+        return names.SIGN_EIGENVALUE
+    return names.SIGN_ENTRY
 
 
 def _wave_sign(trial: Trial, wave: str) -> str:

@@ -9,6 +9,7 @@ from fractions import Fraction
 from flint import acb, arb, ctx
 
 from closedform.algebra.elementary import Element
+from closedform.checking.ground import SPECTRAL
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.slips import names
 from closedform.checking.slips.making import negated, terms_of, times
@@ -70,9 +71,14 @@ def factors(trial: Trial) -> Iterator[Candidate]:
 def left_out(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with one of the terms of the true one added."""
     true = trial.true
-    if not isinstance(true, Element) or trial.entry is not None or true.is_constant:
+    polynomial = trial.claim.says == "characteristic polynomial"
+    if not isinstance(true, Element) or trial.entry is not None:
         return
-    terms = terms_of(written_back(true))
+    if true.is_constant and not polynomial:
+        return
+    strange = set(trial.names) - set(trial.setting.ground.sampled())
+    variable = next(iter(sorted(strange - {SPECTRAL, trial.ground.truth.time})), "lambda")
+    terms = terms_of(written_back(true, {SPECTRAL: variable}))
     for term in terms if len(terms) > 1 else ():
         where = part_text(term)
         yield Candidate(names.TERM_LEFT_OUT, where, _added(trial.tree, term))

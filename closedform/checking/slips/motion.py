@@ -143,7 +143,20 @@ def _particular(trial: Trial) -> Value | None:
     if len(pieces) == 1:
         return ground.number(pieces[0].formula)
     steady = truth.steady.get(subject)
-    return ground.number(steady) if steady is not None else None
+    if steady is not None:
+        return ground.number(steady)
+    return _not_free(solution_value(subject, ground, ground.stretches[0]), ground)
+
+
+def _not_free(value: Value, ground: Ground) -> Value | None:
+    """Return the terms whose rate is no eigenvalue."""
+    if not isinstance(value, Element):
+        return None
+    field, total = value.field, value.field.zero
+    for rate, offset, power, coefficient in value.terms():
+        if rate not in ground.eigenvalues:
+            total = total + coefficient * field.t**power * field.exp(rate * field.t + offset)
+    return total
 
 
 def _of(subject: str, whole: ExactMatrix, ground: Ground) -> Value:

@@ -20,6 +20,7 @@ SIGN_TERM = "sign of a term"
 SIGN_OVERALL = "overall sign"
 
 MISSING_T = "missing factor t in a chain"
+MISSING_TIME = "time missing in an argument"
 MISSING_FACTORIAL = "missing 1/k! in a chain"
 RESONANCE = "forgotten resonance factor t"
 EXTRA_T = "factor t too many"
@@ -102,8 +103,10 @@ COEFFICIENT = "wrong coefficient in the characteristic polynomial"
 ENTRY = "one wrong entry"
 ONE_COEFFICIENT = "one wrong coefficient"
 ONE_NUMBER = "one wrong number"
+FRACTION = "fraction upside down"
 FACTOR_TWO = "factor 2"
 FACTOR = "overall factor"
+MISSING_WAVE = "missing exponential or wave"
 TERM_LEFT_OUT = "term left out"
 TERM_TOO_MANY = "term too many"
 
@@ -130,6 +133,7 @@ MEANINGS: dict[str, str] = {
     SIGN_TERM: "A term of a sum has the opposite sign.",
     SIGN_OVERALL: "The whole right side has the opposite sign.",
     MISSING_T: "A term that a chain of a repeated eigenvalue gives lacks its factor t.",
+    MISSING_TIME: "An exponent or angle lacks the time.",
     MISSING_FACTORIAL: "A power t^k of a chain lacks the factor 1/k!.",
     RESONANCE: "A term driven at resonance lacks its factor t.",
     EXTRA_T: "A factor t stands where there is no chain and no resonance.",
@@ -205,8 +209,10 @@ MEANINGS: dict[str, str] = {
     ENTRY: "One entry of a matrix or column is wrong.",
     ONE_COEFFICIENT: "One coefficient of a formula is wrong.",
     ONE_NUMBER: "One number in a formula is wrong.",
+    FRACTION: "Numerator and denominator have changed places.",
     FACTOR_TWO: "The number is twice or half of what it ought to be.",
     FACTOR: "The whole right side is off by a factor.",
+    MISSING_WAVE: "A term lacks the exponential, sine or cosine that goes with it.",
     TERM_LEFT_OUT: "A term of the sum is missing.",
     TERM_TOO_MANY: "A term stands in the sum that ought not to be there.",
     ROUNDING: "The last digit shown is not the one to which the value rounds.",

@@ -111,7 +111,8 @@ def _told(trial: Trial, one: Solved) -> tuple[str, str]:
 
 def _general_name(trial: Trial, place: Place) -> str:
     claim = trial.claim
-    if place.in_front and claim.says in FUNCTION_KINDS:
+    summed = any(isinstance(n, Sum | Array) for n in walk(trial.tree))
+    if place.in_front and summed and claim.says in FUNCTION_KINDS:
         return names.FACTOR
     if claim.says == "characteristic polynomial":
         return names.COEFFICIENT

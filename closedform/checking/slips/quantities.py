@@ -52,7 +52,7 @@ def rounded(trial: Trial) -> Iterator[Candidate]:
 
     texts = [f"{plain_written(j.literal)} ought to be {j.correct}" for j in wrong[:FEW]]
     with ctx.workprec(BITS):
-        yield Candidate(name, ", ".join(texts), changed(trial.tree, change))
+        yield Candidate(name, ", ".join(texts), changed(trial.tree, change), judged_only=True)
 
 
 def _single(wrong: Judged) -> str:
@@ -83,7 +83,7 @@ def digits(trial: Trial) -> Iterator[Candidate]:
         name = digit_slip(printed, inside)
         if name and (new is right or name == names.DECIMAL_POINT):
             where = f"{plain_written(printed)} ought to be {plain_written(inside)}"
-            yield Candidate(name, where, new)
+            yield Candidate(name, where, new, judged_only=True)
 
 
 def _printed(tree: Written) -> Literal | None:

@@ -59,15 +59,28 @@ def solved(trial: Trial, place: Place) -> Iterator[Solved]:
         value = _root(trial, place)
         if value is None:
             return
-        forms = [simplest(value)] if not trial.loose else []
-        if trial.loose:
-            if place.literal is not None and place.literal.is_decimal:
-                forms.append(to_places(value, place.literal.last_place))
-            else:
-                forms.append(_near_integer(value))
-    for form in forms:
-        if form is not None and form != ZERO:
+        forms = list(_forms(trial, place, value))
+    for form in dict.fromkeys(forms):
+        zero = form == ZERO and not (place.kind == "number" and trial.entry is not None)
+        if not zero:
             yield Solved(place, form, value)
+
+
+def _forms(trial: Trial, place: Place, value: acb) -> Iterator[Written]:
+    """Yield how a number may be written, the plainest first."""
+    exact = simplest(value)
+    if exact is not None:
+        yield exact
+    if not trial.loose:
+        return
+    if place.literal is not None and place.literal.is_decimal:
+        rounded = to_places(value, place.literal.last_place)
+        if rounded is not None:
+            yield rounded
+        return
+    near = _near_integer(value)
+    if near is not None:
+        yield near
 
 
 def simplest(value: acb) -> Written | None:

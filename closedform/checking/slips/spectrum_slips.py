@@ -4,7 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import replace
+from fractions import Fraction
 from itertools import permutations, product
+from typing import TypeGuard
 
 from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim, Group
@@ -13,7 +15,7 @@ from closedform.checking.judge_vectors import authors_diagonal, authors_matrix
 from closedform.checking.matrices import ExactMatrix, diagonal, identity
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips import names
-from closedform.checking.slips.making import ONE, ZERO, negated
+from closedform.checking.slips.making import ONE, ZERO, negated, number
 from closedform.checking.slips.numbers import is_bare
 from closedform.checking.slips.solving import Place, solved
 from closedform.checking.slips.spots import Spot
@@ -29,6 +31,7 @@ from closedform.notation.written.tree import (
     Sum,
     Written,
     changed,
+    walk,
 )
 
 __all__ = ["canonical", "eigenvectors", "listed", "root_numbers", "transformations"]
@@ -48,6 +51,9 @@ def listed(claim: Claim, finding: Finding, setting: Setting) -> Slip | None:
     for name, where, new in tried:
         if len(values) > 1 and _passes(claim, new, setting):
             return Slip(name, where, Listing(new))
+    together = _same_number(claim, setting)
+    if together is not None:
+        return together
     if finding.right is not None and isinstance(finding.right, Listing):
         single = all(_alone(claim, k, setting) for k in range(len(claim.groups)))
         if single and _passes(claim, finding.right.items, setting):
@@ -56,6 +62,35 @@ def listed(claim: Claim, finding: Finding, setting: Setting) -> Slip | None:
             name = names.GEOMETRIC if defective else names.MULTIPLICITY
             return Slip(name, "how often each counts", finding.right)
     return None
+
+
+def _same_number(claim: Claim, setting: Setting) -> Slip | None:
+    """Return the slip in a number that stands in several eigenvalues, as in a pair."""
+    wrong = [k for k in range(len(claim.groups)) if not _alone(claim, k, setting)]
+    if len(wrong) < 2:
+        return None
+    several = [{n for v in claim.groups[k].values for n in walk(v) if _is_count(n)} for k in wrong]
+    common = sorted(set.intersection(*several), key=lambda n: n.value)
+    for literal in common:
+        for share in (Fraction(1, 2), Fraction(2), Fraction(1, 4), Fraction(4)):
+            right = number(literal.value * share)
+            groups = list(claim.groups)
+            for k in wrong:
+                values = tuple(_replaced(v, literal, right) for v in groups[k].values)
+                groups[k] = replace(groups[k], values=values)
+            if judge(replace(claim, groups=tuple(groups)), setting).passes:
+                where = f"{plain_written(literal)} ought to be {plain_written(right)}"
+                items = tuple(group.values[-1] for group in groups)
+                return Slip(names.LIST_FACTOR, where, Listing(items))
+    return None
+
+
+def _is_count(node: Written) -> TypeGuard[Literal]:
+    return isinstance(node, Literal)
+
+
+def _replaced(tree: Written, old: Literal, new: Written) -> Written:
+    return changed(tree, lambda n: new if n == old else None)
 
 
 def _term_turned(tree: Sum, at: int) -> Written:
@@ -125,8 +160,10 @@ def canonical(trial: Trial) -> Iterator[Candidate]:
             yield Candidate(name, where, trial.changed(spot, _with(rows, ones)))
         for k in range(size):
             for value in trial.ground.eigenvalues:
-                new = _with(rows, {(k, k): written_back(value)})
-                yield Candidate(names.ENTRY, f"entry {k + 1, k + 1}", trial.changed(spot, new))
+                entry = written_back(value)
+                name = names.SIGN_EIGENVALUE if entry == negated(rows[k][k]) else names.ENTRY
+                new = _with(rows, {(k, k): entry})
+                yield Candidate(name, f"entry {k + 1, k + 1}", trial.changed(spot, new))
 
 
 def _with(rows: tuple[tuple[Written, ...], ...], entries: dict[tuple[int, int], Written]) -> Array:

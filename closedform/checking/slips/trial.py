@@ -53,6 +53,8 @@ class Candidate:
     name: str
     where: str
     tree: Written
+    judged_only: bool = False
+    """Whether balls are not to sort it out: it is near to what stands there."""
 
 
 @dataclass(slots=True)
@@ -155,12 +157,13 @@ class Trial:
         groups[self.group] = replace(groups[self.group], values=values)
         return replace(self.claim, groups=tuple(groups))
 
-    def mends(self, tree: Written) -> bool:
+    def mends(self, candidate: Candidate) -> bool:
         """Whether the line holds with a formula in this place: by balls, then exactly."""
+        tree = candidate.tree
         if tree in self.effort.seen or tree == self.tree or self.spent:
             return False
         self.effort.seen.add(tree)
-        return self.near(tree) and self.holds(tree)
+        return (candidate.judged_only or self.near(tree)) and self.holds(tree)
 
     def holds(self, tree: Written) -> bool:
         """Whether the line is judged to hold with a formula in this place."""
