@@ -10,7 +10,7 @@ from rich.cells import cell_len, chop_cells
 
 from closedform.checking.verdict import CheckReport, LineVerdict, Word
 from closedform.cli.screen import Line, printable
-from closedform.document.checked_words import outcome, sentence, slip_words, tally
+from closedform.document.checked_words import outcome, place_of, sentence, slip_words, tally
 from closedform.notation.written.plain_form import plain_written
 
 __all__ = ["check_line", "check_summary"]
@@ -95,10 +95,12 @@ def _reason(verdict: LineVerdict, width: int) -> list[str]:
 
 
 def _mending(verdict: LineVerdict) -> Iterator[tuple[str, str]]:
-    """Yield labelled texts on a line that fails: the right form, and the slip."""
+    """Yield labelled texts on a line that fails: its place, the right form, and the slip."""
     if verdict.verdict != "fails":
         return
     number, slip = verdict.line.number, verdict.slip
+    if place := place_of(verdict):
+        yield f"place of {number}", place
     if verdict.right is not None:
         yield f"right in {number}", plain_written(verdict.right)
     if slip is not None:

@@ -8,16 +8,26 @@ would be too small to read is printed as typed text instead.  So nothing runs of
 from __future__ import annotations
 
 import re
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from itertools import accumulate
 
+from closedform.checking.verdict import LineVerdict
 from closedform.document.checked_pieces import Piece, piece, pieces
 from closedform.document.units import unit_latex
 from closedform.notation.latex.escape import escaped
-from closedform.notation.written.plain_form import plain_written
-from closedform.notation.written.tree import Array, Literal, Statement, Written
+from closedform.notation.written.plain_form import plain_statement, plain_written
+from closedform.notation.written.tree import (
+    Array,
+    Jet,
+    Limit,
+    Literal,
+    Statement,
+    Symbol,
+    Written,
+    walk,
+)
 
-__all__ = ["formula_of", "statement_of", "typed"]
+__all__ = ["formula_of", "right_of", "statements_of", "typed"]
 
 SIGNS = {"≈": r"\approx", "≠": r"\neq", "≤": r"\leq", "≥": r"\geq", "→": r"\to", "≡": r"\equiv"}
 SIGNS |= {"∝": r"\propto", "=": "=", "<": "<", ">": ">"}
@@ -43,21 +53,66 @@ LONGEST_TYPED = 600
 LISTED = r"[\,\cdot\,]"
 """Stands for a matrix whose entries are listed below it."""
 
+NAMES = (Symbol, Jet, Limit)
+"""What stands on the left of a line as the name of what it gives."""
+
+SHORT, LINE = 40, 78
+"""Characters of a statement that may stand beside another, and of a line in which they do."""
+
+BESIDE = ",\\quad\\allowbreak\n  "
+
 OPENING = re.compile(r"(?P<opens>\{|\\left\b|\\begin\b)|(?P<closes>\}|\\right\b|\\end\b)")
 
 
 def formula_of(tree: Written) -> str:
     """Return a formula as a paragraph of LaTeX, with the entries of a wide matrix below."""
-    return _set((tree,), (), "")
+    content, entries = _set((tree,), (), "")
+    return "\n".join([_paragraph(content), *entries])
 
 
-def statement_of(statement: Statement) -> str:
-    """Return a statement as it was read: its chain, its unit and for when it holds."""
+def right_of(verdict: LineVerdict) -> str:
+    """Return the right form of a line as a paragraph, with the author's name for it before it."""
+    right, read = verdict.right, verdict.read
+    if right is None:
+        return ""
+    if len(read) != 1 or len(read[0].members) < 2 or not isinstance(read[0].members[0], NAMES):
+        return formula_of(right)
+    rounded = any(isinstance(node, Literal) and node.is_decimal for node in walk(right))
+    members = (read[0].members[0], right)
+    return statements_of([Statement(members, ("≈" if rounded else "=",), read[0].unit)])
+
+
+def statements_of(statements: Iterable[Statement]) -> str:
+    """Return statements as they were read: chains, their units, and for when they hold.
+
+    Short ones stand beside each other, as far as a line has room.
+    """
+    paragraphs: list[str] = []
+    beside: list[str] = []
+    room = 0
+    for statement in statements:
+        width = len(plain_statement(statement))
+        content, entries = _set(statement.members, statement.relations, _after(statement))
+        if beside and (width > SHORT or entries or width > room):
+            paragraphs.append(_paragraph(BESIDE.join(beside)))
+            beside = []
+        room = (room if beside else LINE) - width
+        beside.append(content)
+        if width > SHORT or entries:
+            paragraphs += [_paragraph(content), *entries]
+            beside = []
+    if beside:
+        paragraphs.append(_paragraph(BESIDE.join(beside)))
+    return "\n".join(paragraphs)
+
+
+def _after(statement: Statement) -> str:
+    """Return what follows the chain of a statement: its unit, and for when it holds."""
     after = rf"\,{unit_latex(statement.unit)}" if statement.unit else ""
     if statement.conditions:
         ranges = " and ".join(_measured(piece(given)) for given in statement.conditions)
         after += rf"\quad for {ranges}"
-    return _set(statement.members, statement.relations, after)
+    return after
 
 
 def typed(text: str) -> str:
@@ -68,11 +123,12 @@ def typed(text: str) -> str:
     return rf"{{\typed {escaped(words[:LONGEST_TYPED])}}}{more}"
 
 
-def _set(members: Sequence[Written], relations: Sequence[str], after: str) -> str:
+def _set(members: Sequence[Written], relations: Sequence[str], after: str) -> tuple[str, list[str]]:
+    """Return a chain for a paragraph, and paragraphs with the entries of wide matrices."""
     plain = [plain_written(member) for member in members]
     if sum(map(len, plain)) > LONGEST:
         later = (f" {sign} {text}" for sign, text in zip(relations, plain[1:], strict=True))
-        return _paragraph(typed(plain[0] + "".join(later)) + after)
+        return typed(plain[0] + "".join(later)) + after, []
     shown: list[Piece] = []
     listed: list[Array] = []
     for sign, member in zip(("", *relations), members, strict=True):
@@ -84,9 +140,7 @@ def _set(members: Sequence[Written], relations: Sequence[str], after: str) -> st
         if sign:
             own[0] = own[0].signed(SIGNS[sign], sign)
         shown += own
-    paragraphs = [_paragraph(_joined(shown) + after)]
-    paragraphs += [text for matrix in listed for text in _entries(matrix)]
-    return "\n".join(paragraphs)
+    return _joined(shown) + after, [text for matrix in listed for text in _entries(matrix)]
 
 
 def _paragraph(content: str) -> str:

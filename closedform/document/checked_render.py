@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 
 from closedform.checking.claim import KINDS
 from closedform.checking.verdict import CheckReport
-from closedform.document.checked_formulas import formula_of, statement_of, typed
+from closedform.document.checked_formulas import formula_of, right_of, statements_of, typed
 from closedform.document.checked_words import (
     MEANINGS,
     counts,
@@ -110,7 +110,8 @@ def _environment(template: str | Path) -> Environment:
     found = environment(template, References())
     found.filters |= {
         "formula": formula_of,
-        "statement": statement_of,
+        "statements": statements_of,
+        "right": right_of,
         "typed": typed,
         "place_of": place_of,
         "slip_words": slip_words,

@@ -91,6 +91,7 @@ def test_a_pipe_gets_the_table_as_plain_text(runner: CliRunner) -> None:
     text = "\n".join(lines)
     assert "  verdicts       8 lines: 3 hold, 1 fails, 3 are carried and 1 was not read" in text
     assert "  outcome        line 4 fails; lines 5 to 7 are carried from it;" in text
+    assert "  place of 4     line 26" in text
     assert "  right in 4     {-1, -4}" in text
     assert "  slip in 4      a sign was lost, before 5 in the numerator" in text
     assert "  written        out/slipped.check.tex" in text

@@ -5,6 +5,7 @@ from __future__ import annotations
 import ast
 import operator
 from collections.abc import Callable
+from dataclasses import replace
 from fractions import Fraction
 from unittest.mock import patch
 
@@ -13,11 +14,12 @@ from hypothesis import given, reject
 from hypothesis import strategies as st
 
 from closedform.document import checked_pieces
-from closedform.document.checked_formulas import formula_of, statement_of
+from closedform.document.checked_formulas import formula_of, right_of, statements_of
 from closedform.document.checked_pieces import pieces
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (
     Array,
+    Jet,
     Listing,
     Literal,
     Negation,
@@ -30,7 +32,7 @@ from closedform.notation.written.tree import (
     Symbol,
     Written,
 )
-from tests.document.checked_samples import num, rows
+from tests.document.checked_samples import judged, num, rows
 
 VALUES = {"a": Fraction(3), "b": Fraction(-5, 7), "x_1": Fraction(11, 13), "long_name": Fraction(2)}
 BINARY: dict[type[ast.operator], Callable[[Fraction, Fraction], Fraction]] = {
@@ -129,9 +131,37 @@ def test_a_short_formula_is_as_it_would_be_elsewhere() -> None:
 
 
 def test_a_chain_may_break_before_each_relation() -> None:
-    text = statement_of(Statement((Symbol("x"), Symbol("a"), num("2")), ("=", "≈")))
+    text = statements_of([Statement((Symbol("x"), Symbol("a"), num("2")), ("=", "≈"))])
     assert text.count(r"\allowbreak") == 2
     assert r"\piece{{}\approx 2}" in text
+
+
+def test_short_statements_stand_beside_each_other_as_far_as_there_is_room() -> None:
+    short = [Statement((Symbol(f"x_{k}"), num("10")), ("=",)) for k in range(1, 5)]
+    assert statements_of(short).count(r"\begin{formula}") == 1
+    assert statements_of(short).count(r"\quad") == 3
+    assert statements_of(short * 6).count(r"\begin{formula}") > 1
+    long = Statement((Symbol("y"), Sum(tuple(Symbol(f"term_{k}") for k in range(9)))), ("=",))
+    assert statements_of([short[0], long, short[1]]).count(r"\begin{formula}") == 3
+    order = [statements_of([*short[:2], long, *short[2:]]).index(f"x_{{{k}}}") for k in range(1, 5)]
+    assert order == sorted(order)
+
+
+def test_the_right_form_has_the_author_s_name_for_it() -> None:
+    wrong = judged(1, "fails", "value x", "", Jet("x", 0, num("1")), num("0.41"), right=num("0.53"))
+    read = (replace(wrong.read[0], unit="mm"),)
+    shown = right_of(replace(wrong, read=read))
+    assert r"\piece{{}\approx 0.53}" in shown
+    assert r"\mathrm{mm}" in shown
+    assert "x(1)" in shown.replace(r"\left", "").replace(r"\right", "")
+    assert r"\piece{{}= 3}" in right_of(replace(wrong, right=num("3")))
+    for unnamed in (
+        replace(wrong, read=()),
+        replace(wrong, read=wrong.read * 2),
+        replace(wrong, read=(Statement((num("1"), num("2")), ("=",)),)),
+    ):
+        assert right_of(unnamed) == formula_of(num("0.53"))
+    assert right_of(replace(wrong, right=None)) == ""
 
 
 def test_entries_stand_by_row_and_column() -> None:
