@@ -6,18 +6,26 @@ import re
 from collections.abc import Iterator
 from fractions import Fraction
 
+from closedform.notation.reader import LARGEST_EXPONENT, MOST_DIGITS
 from closedform.notation.written.tree import Literal
 
-__all__ = ["MINUS", "NUMBER", "TEN", "THOUSANDS", "listing_commas", "literal"]
+__all__ = ["MINUS", "NUMBER", "TEN", "THOUSANDS", "is_bounded", "listing_commas", "literal"]
 
 MINUS = "[-−–]"
 NUMBER = re.compile(r"(?:[0-9]+(?:\.[0-9]*)?|\.[0-9]+)(?:[eE][+-]?[0-9]+(?![0-9.]))?")
 THOUSANDS = re.compile(r"[0-9]{1,3}(?:[ \u00a0\u2009\u202f][0-9]{3})+(?![0-9])")
 TEN = re.compile(
     rf"\s*[*×·⋅x]\s*10\s*(?:(?:\^|\*\*)\s*(?P<b>[({{]?)\s*(?P<n>(?:{MINUS}|\+)?[0-9]{{1,4}})\s*"
-    r"(?(b)[)}]?)|(?P<s>[⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]{1,4}))(?![0-9.])"
+    r"(?(b)[)}]?)|(?P<s>[⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]{1,3}))(?![0-9.])"
 )
 MANY = ("atan2", "arctan2", "min", "max", "diag", "Min", "Max", "blkdiag", "piecewise")
+
+
+def is_bounded(written: str) -> bool:
+    """Say whether a number is of a size that can be worked with."""
+    digits, _, exponent = written.lower().partition("e")
+    size = exponent.lstrip("+-0")
+    return len(digits) <= MOST_DIGITS and len(size) <= 4 and int(size or "0") <= LARGEST_EXPONENT
 
 
 def literal(written: str, power: int, start: int, end: int, *, scaled: bool = False) -> Literal:

@@ -7,12 +7,14 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from fractions import Fraction
 
+from closedform.notation.reader import LARGEST_EXPONENT, MOST_DIGITS
 from closedform.notation.written.tree import EULER, Declared, Jet, Literal
 from closedform.notation.written.typed_numbers import (
     MINUS,
     NUMBER,
     TEN,
     THOUSANDS,
+    is_bounded,
     listing_commas,
     literal,
 )
@@ -157,7 +159,7 @@ class Scanner:
         """Return a number, with a decimal comma and with a power of ten if that is written."""
         text = self.text
         grouped = THOUSANDS.match(text, at)
-        if grouped and not self._in_matrix(at):
+        if grouped and not self._in_matrix(at) and is_bounded(grouped[0]):
             digits = re.sub(r"\D", "", grouped[0])
             return Lexeme("NUMBER", literal(digits, 0, at, grouped.end()), at, grouped.end())
         found = NUMBER.match(text, at)
@@ -172,6 +174,9 @@ class Scanner:
         if "e" in written.lower() and self._is_name(re.split("[eE]", written)[1], written):
             written = re.split("[eE]", written)[0]
             end = at + len(written)
+        if not is_bounded(written):
+            why = f"numbers have up to {MOST_DIGITS} digits and exponents to {LARGEST_EXPONENT}"
+            raise StrayError(at, written, why)
         power = 0
         if (ten := TEN.match(text, end)) and "e" not in written.lower():
             raised = ten["n"] or "".join(SUPERSCRIPTS[c] for c in ten["s"])
@@ -234,6 +239,8 @@ class Scanner:
         raised = (
             re.match(r"\s*(?:\^|\*\*|[⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺ᵗˢⁿ⁽])", self.text[end : end + 9]) is not None
         )
+        trace = word in ("tr", "Tr") and re.match(r"\s+[A-Z]", self.text[end:]) is not None
+        bracket = bracket or trace
         pieces = self.words.read(word, at, bracket=bracket, raised=raised)
         if pieces is None and re.fullmatch("(?:int|integral|sum|prod)(?:_.*)?", word):
             raise StrayError(at, word, _why_stray("∫"))

@@ -8,6 +8,7 @@ from fractions import Fraction
 from lark import Token
 
 from closedform.notation.written.grammar import token
+from closedform.notation.written.latex_units import is_unit
 from closedform.notation.written.tree import (
     EULER,
     Identity,
@@ -66,10 +67,24 @@ class Weaver(Doubtful):
             name = node if isinstance(node, Jet) else Jet(getattr(node, "name", ""), 0)
             yield token("CALL", Jet(name.name, name.order, self.time), sign.start, end)
             close = self.signs.pairs[after]
-            yield from self._arguments(after, close)
+            if self._has_unit(after, close):
+                yield from self._number_alone(after, close)
+            else:
+                yield from self._arguments(after, close)
             return close + 1
         yield token("ATOM", node, sign.start, end)
         return after
+
+    def _has_unit(self, k: int, close: int) -> bool:
+        """Whether an instant in brackets is a number with a unit: x(0.1 s)."""
+        names = {getattr(sign.value, "name", "") for sign in self.signs.all[k + 2 : close]}
+        number = self.signs.kind(k + 1, close) == "NUMBER" and close > k + 2
+        unit = is_unit(self.signs.inside(k + 2, close))
+        return number and unit and not names & {*self.declared.names, self.declared.time}
+
+    def _number_alone(self, k: int, close: int) -> Iterator[Token]:
+        for sign in (self.signs.all[k], self.signs.all[k + 1], self.signs.all[close]):
+            yield token(sign.kind, sign.value, sign.start, sign.end)
 
     def _special(self, k: int, stop: int) -> Steps | None:
         """Return the steps of a word with a grammar of its own: lim, L{..}, eye(2), piecewise."""
@@ -220,6 +235,11 @@ class Weaver(Doubtful):
         sign, other = self.signs.all[k], self.signs.pairs.get(k)
         if other is not None:
             side = "OPEN" if other > k else "CLOSE"
+            if sign.kind == "BAR" and self._holds_matrix(min(k, other), max(k, other)):
+                if side == "OPEN":
+                    yield token("FUNCTION", "det", sign.start, sign.start)
+                yield token(side, "(", sign.start, sign.end)
+                return k + 1
             kind = "NORM" if sign.kind == "DOUBLE_BAR" else "BAR"
             yield token(f"{kind}_{side}", sign.value, sign.start, sign.end)
             return k + 1
@@ -237,5 +257,12 @@ class Weaver(Doubtful):
             raise self._stray(k, "behind a bar there must be a variable and its value: |_{t=0}")
         yield from self._group(begin, end)
         return end
+
+    def _holds_matrix(self, k: int, close: int) -> bool:
+        """Whether between two bars there is a matrix: then they mean the determinant."""
+        inside = self.signs.all[k + 1 : close]
+        unit = any(isinstance(sign.value, Identity) for sign in inside)
+        whole = self.signs.pairs.get(k + 1) == close - 1 and inside[0].kind == "OPEN"
+        return unit or (whole and self._shape(k + 1) in ("rows", "nested"))
 
     _double_bar = _bar
