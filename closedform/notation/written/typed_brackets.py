@@ -8,6 +8,7 @@ from typing import Literal as OneOf
 from lark import Token
 
 from closedform.notation.written.grammar import token
+from closedform.notation.written.tree import Jet
 from closedform.notation.written.typed_places import ENDS, SIGNED, Signs, split_at
 from closedform.notation.written.typed_scanner import StrayError
 
@@ -213,6 +214,10 @@ class Brackets:
                 "a prime stands behind a function of time or a matrix; this is none",
             )
         if k - 1 not in self.columns:
+            held = self.signs.all[self.signs.pairs[k - 1] : k]
+            if any(isinstance(part.value, Jet) for part in held):
+                why = "it may be a derivative or a transposition; write d/dt before it, or ^T"
+                raise StrayError(sign.start, "'", why)
             yield token("POSTFIX", "transpose", sign.start, sign.end)
         return k + 1
 
