@@ -5,6 +5,7 @@
 from __future__ import annotations
 
 from fractions import Fraction
+from functools import partial
 from typing import Any
 
 from lark import Token, Transformer
@@ -22,6 +23,7 @@ from closedform.notation.written.building_parts import (
     with_signs,
 )
 from closedform.notation.written.tree import (
+    IMAGINARY,
     PI,
     Apply,
     Array,
@@ -41,6 +43,8 @@ from closedform.notation.written.tree import (
     SumOver,
     Symbol,
     Transform,
+    Written,
+    changed,
 )
 
 __all__ = ["Building"]
@@ -222,9 +226,10 @@ class Building(Transformer[Token, Any]):
 
     def sum_over(self, children: list[Any]) -> tuple[str, Part, Part]:
         start, upper = children[2], children[4]
-        if start.relations != ("=",) or not isinstance(start.node, Symbol):
+        variable = Symbol("i") if start.node == IMAGINARY else start.node
+        if start.relations != ("=",) or not isinstance(variable, Symbol | Jet):
             raise RefusedError("below the sum there must be its variable and where it starts: n=0")
-        return start.node.name, Part(start.members[1], start.depth), upper
+        return variable.name, Part(start.members[1], start.depth), upper
 
     def limit(self, children: list[Any]) -> tuple[str, Part]:
         if not isinstance(children[2].node, Symbol) or children[3].value != "→":
@@ -239,7 +244,8 @@ class Building(Transformer[Token, Any]):
         body: Part = children[1]
         match children[0]:
             case (str(variable), Part() as lower, Part() as upper):
-                node = SumOver(body.node, variable, lower.node, upper.node)
+                summand = changed(body.node, partial(_indexed, variable))
+                node = SumOver(summand, variable, lower.node, upper.node)
                 return part_of(node, body, lower, upper)
             case (str(variable), Part() as point):
                 return part_of(Limit(body.node, variable, point.node), body, point)
@@ -277,6 +283,13 @@ class Building(Transformer[Token, Any]):
         if isinstance(node, Jet) and node.at is None and name == time:
             return part_of(Jet(node.name, node.order, at), body, point)
         return part_of(Evaluated(node, name, at), body, point)
+
+
+def _indexed(variable: str, node: Written) -> Written | None:
+    """Return the variable of a sum where it was read as the imaginary unit or a function."""
+    if (variable == "i" and node == IMAGINARY) or node == Jet(variable):
+        return Symbol(variable)
+    return None
 
 
 def _range(part: Part) -> Range:

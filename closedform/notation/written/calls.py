@@ -107,6 +107,9 @@ def _head(
     declared = names.find(value.name, bold=value.bold)
     if declared is not None:
         matrix = declared in names.declared.matrices or value.bold
+        transition = matrix and timed and value.name in ("Phi", "Psi")
+        if transition and bracket.value == "(":
+            return call
         instant = exactly or (only is not None and only.type == "NUMBER" and matrix)
         return call if instant and (defines or matrix) else None
     if value.name == "delta":

@@ -9,7 +9,7 @@ from lark import Token
 from closedform.notation.written.grammar import token
 from closedform.notation.written.latex_lexer import Raw
 from closedform.notation.written.latex_parts import CLOSING, OPENING
-from closedform.notation.written.latex_texts import LatexTexts
+from closedform.notation.written.latex_texts import UNIT_COMMANDS, LatexTexts
 from closedform.notation.written.macros import (
     BARS,
     BIGS,
@@ -31,6 +31,7 @@ from closedform.notation.written.written_errors import (
 
 __all__ = ["LatexCommands"]
 
+UNIT_STARTS = FONTS | FRACTIONS | UNIT_COMMANDS
 REFUSED = {
     **dict.fromkeys(("SIrange", "numrange", "qtyrange", "SIlist", "numlist", "qtylist"), "range"),
     **dict.fromkeys(("dots", "ldots", "cdots", "vdots", "ddots", "dotsc", "dotsb"), "dots"),
@@ -84,7 +85,7 @@ class LatexCommands(LatexTexts):
         """Add a command that takes arguments or scripts."""
         raw = self.raws[at]
         name = raw.text
-        stop = self.unit(at, end, out) if name in FONTS or name in ("%", "Omega", "mu") else at
+        stop = self.unit(at, end, out) if name in UNIT_STARTS else at
         if stop == at and name in ("mathcal", "mathscr"):
             stop = self.transform(at, end, out)
         if stop > at:

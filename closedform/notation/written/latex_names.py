@@ -108,6 +108,8 @@ class LatexNames:
             return name, close + 1
         if raw.kind != "command":
             return None, at
+        if raw.text.startswith("up") and raw.text[2:] in GREEK:
+            return Name(raw.text[2:], raw.start, raw.end), at + 1
         if raw.text in GREEK:
             return Name(raw.text, raw.start, raw.end, font == "mathbf"), at + 1
         if raw.text in ("imath", "jmath"):

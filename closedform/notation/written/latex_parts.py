@@ -216,6 +216,9 @@ class LatexParts(LatexScripted):
         italic = known("T") is None or name.bold or known(spelling) in self.names.declared.matrices
         mark = mark_of(scripts.above, transposed=italic)
         euler = self.names.constant(spelling) == EULER
+        goes_on = at < end and self.raws[at].kind in ("letter", "digit")
+        if goes_on and mark in ("plus", "minus") and scripts.bare:
+            self.stop(scripts.above[0], "write the whole exponent in braces")
         bounds = (name.start, max(name.end, scripts.end))
         if euler and scripts.above and mark != "star":
             if scripts.bare and scripts.above[0].text in "+-":

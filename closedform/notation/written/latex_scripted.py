@@ -56,8 +56,8 @@ class LatexScripted(LatexNames):
         italic = self.names.find("T") is None or last.type == "MATRIX_CLOSE"
         italic = italic or any(t.type == "COMMA" for t in out[-200:])
         mark = mark_of(scripts.above, transposed=italic)
-        if last.type == "NUMBER" and mark in ("plus", "minus"):
-            return
+        if last.type == "NUMBER" and mark in ("plus", "minus") and not last.value.value:
+            return  # an instant, just after or before nought
         if last.type == "NUMBER" and mark == "transpose":
             mark = ""
         if mark == "degree" and last.type not in ("NUMBER", "CLOSE", "GROUP_CLOSE"):

@@ -190,12 +190,27 @@ def _parted(row: list[list[Token]]) -> tuple[list[Token], list[Token]]:
 def _conditions(tokens: list[Token]) -> list[Token]:
     """Return the tokens of conditions: words between them as AND, words before them left out."""
     out: list[Token] = []
+    depth = 0
     for part in _trimmed(tokens):
         if part.type == "WORD" and part.value == "otherwise":
             return [token("OTHERWISE", "", part.start_pos or 0, part.end_pos or 0)]
-        if part.type in ("WORD", "IMPLIES", "COMMA") and out:
-            if out[-1].type != "AND" and part.value != "for":
+        depth += part.type == "OPEN"
+        depth -= part.type == "CLOSE"
+        if depth == 0 and part.type in ("WORD", "IMPLIES", "COMMA"):
+            if out and out[-1].type != "AND" and part.value != "for":
                 out.append(token("AND", "", part.start_pos or 0, part.end_pos or 0))
-        elif part.type not in ("WORD", "SPACE", "COMMA", "SEMI", "PERIOD"):
+        elif part.type not in ("SPACE", "SEMI", "PERIOD"):
             out.append(part)
-    return out
+    compared = any(part.type == "REL" for part in out)
+    whole = len(out) > 2 and out[0].type == "OPEN" and out[-1].type == "CLOSE"
+    return out[1:-1] if whole and compared and _wraps(out) else out
+
+
+def _wraps(tokens: list[Token]) -> bool:
+    """Tell whether the bracket that begins tokens ends them."""
+    depth = 0
+    for index, part in enumerate(tokens):
+        depth += part.type.endswith("OPEN") - part.type.endswith("CLOSE")
+        if depth == 0:
+            return index == len(tokens) - 1
+    return False

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from fractions import Fraction
 
 from lark import Token
@@ -15,14 +16,16 @@ from closedform.notation.written.macros import (
     BOLD,
     CALLIGRAPHIC,
     FONTS,
+    FRACTIONS,
     FUNCTION_WORDS,
 )
 from closedform.notation.written.pairs import OPERAND_ENDS
-from closedform.notation.written.tree import EULER, Constant, Literal
+from closedform.notation.written.tree import EULER, Constant, Literal, Symbol
 from closedform.notation.written.words import word_of
 
 __all__ = ["LatexTexts"]
 
+UNIT_COMMANDS = frozenset({"%", "Omega", "mu", "upmu", "upOmega"})
 PARTING = frozenset({"COMMA", "SEMI", "ROW_END", "PERIOD", "IMPLIES", "TEXT", "WORD", "REL"})
 
 
@@ -57,7 +60,9 @@ class LatexTexts(LatexParts):
         """Read 4.0e{-2} as a number, with its other reading beside it."""
         inside = self.raws[at + 1 : close]
         digits = "".join(raw.text for raw in inside).replace("−", "-")
-        if len(out) < 2 or out[-1].value != EULER or out[-2].type != "NUMBER":
+        while len(out) > 1 and out[-2].type == "SPACE" and out[-1].value == Symbol("E"):
+            del out[-2]
+        if len(out) < 2 or out[-1].value not in (EULER, Symbol("E")) or out[-2].type != "NUMBER":
             return False
         if out[-2].end_pos is None or not digits.lstrip("+-").isdecimal() or len(digits) > 4:
             return False
@@ -78,7 +83,11 @@ class LatexTexts(LatexParts):
         if before is None or before.type not in OPERAND_ENDS:
             return at
         apart = out[-1].type == "SPACE"
-        if self.raws[at].text in ("Omega", "mu") and not (apart and before.type == "NUMBER"):
+        if apart and out[-1].value > 1 and before.type != "NUMBER":
+            return at
+        if before.type == "NUMBER" and (stop := self.programmed(at, end, out)) > at:
+            return stop
+        if self.raws[at].text in UNIT_COMMANDS - {"%"} and not (apart and before.type == "NUMBER"):
             return at
         found, stop = self.unit_extent(at, end)
         if not found:
@@ -95,10 +104,29 @@ class LatexTexts(LatexParts):
             return at
         if found == "d" and stop < end and self.is_letter(stop):
             return at
-        if self.raws[at].text in ("Omega", "mu") and self.names.find(self.raws[at].text):
+        if self.raws[at].text == "Omega" and self.names.find("Omega"):
             return at
         out.append(token("UNIT", found, self.raws[at].start, self.raws[stop - 1].end))
         return stop
+
+    def programmed(self, at: int, end: int, out: list[Token]) -> int:
+        """Read the upright e-4 behind a number as a power of ten; return the index behind it."""
+        raw = self.raws[at]
+        if raw.kind == "text":
+            behind, word = at + 1, raw.arguments[0] if raw.arguments else ""
+        elif raw.text in FONTS:
+            low, high, behind = self.argument(at + 1, end, raw)
+            word = "".join(part.text for part in self.raws[low:high])
+        else:
+            return at
+        form = re.fullmatch(r"[eE]([+−-]?[0-9]{1,3})", word.strip())
+        if form is None:
+            return at
+        while out[-1].type == "SPACE":
+            out.pop()
+        number = scaled(out.pop().value, int(form[1].replace("−", "-")), raw.end)
+        out.append(token("NUMBER", number, number.start, number.end))
+        return behind
 
     def unit_extent(self, at: int, end: int) -> tuple[str, int]:
         """Return the longest unit that begins at an index, and the index behind it."""
@@ -106,9 +134,10 @@ class LatexTexts(LatexParts):
         index = at
         while index < end:
             raw = self.raws[index]
-            if raw.kind == "text" or (raw.kind == "command" and raw.text in FONTS):
+            takes = FONTS | (FRACTIONS if index == at else frozenset())
+            if raw.kind == "text" or (raw.kind == "command" and raw.text in takes):
                 index = self.behind(index, end)
-            elif raw.kind == "command" and raw.text in ("Omega", "mu", "%"):
+            elif raw.kind == "command" and raw.text in UNIT_COMMANDS:
                 index += 1
             elif raw.kind == "^":
                 index = self.argument(index + 1, end, raw)[2]
@@ -120,7 +149,7 @@ class LatexTexts(LatexParts):
             text = unit_text(self.raws[at:index])
             if text:
                 found, stop = text, index
-            elif self.raws[index - 1].kind != "text" and raw.text != "mu":
+            elif self.raws[index - 1].kind != "text" and raw.text not in ("mu", "upmu"):
                 break
         return found, stop
 
@@ -152,9 +181,17 @@ class LatexTexts(LatexParts):
             return self.named(name, behind, end, out)
         elif "\\" in text or "$" in text:
             self.stop(raw, "a text with commands in it is not read; part it from the formula")
+        elif bare.isalpha() and self.is_behind_number(out):
+            out.append(token("UNIT", bare, raw.start, raw.end))
         else:
             out.append(token("TEXT", bare, raw.start, raw.end))
         return at + 1
+
+    def is_behind_number(self, out: list[Token]) -> bool:
+        """Tell whether a number stands right before, at most with a narrow space between."""
+        wide = bool(out) and out[-1].type == "SPACE" and out[-1].value > 1
+        before = next((part for part in reversed(out) if part.type != "SPACE"), None)
+        return before is not None and before.type == "NUMBER" and not wide
 
     def is_name(self, word: str, at: int, end: int, out: list[Token]) -> bool:
         """Tell whether a word set as text is part of the formula."""

@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 
 from closedform.notation.written.latex_lexer import Raw
+from closedform.notation.written.macros import FRACTIONS
 
 __all__ = ["is_unit", "unit_text"]
 
@@ -128,6 +129,8 @@ _WORDS = {
     **dict.fromkeys((",", ";", ":", " ", "cdot", "times", "quad", ".", "thinspace"), " "),
     **dict.fromkeys(("!", "mathrm", "text", "rm", "mathsf", "left", "right", "mathit"), ""),
     "micro": "µ",
+    "upmu": "µ",
+    "upOmega": "Ω",
     "per": "/",
     "textdegree": "°",
     "textmu": "µ",
@@ -184,11 +187,18 @@ def is_unit(text: str) -> bool:
     """Tell whether a text is a product of powers of units, as rad/s, N s/m or kg·m^-3."""
     factors = [factor for factor in _BETWEEN.split(text) if factor]
     forms = [_FACTOR.fullmatch(factor) for factor in factors]
-    return bool(forms) and all(form and form["symbol"] in (*_SYMBOLS, "1") for form in forms)
+    known = all(form and form["symbol"] in (*_SYMBOLS, "1") for form in forms)
+    return known and any(form and form["symbol"] != "1" for form in forms)
 
 
 def unit_text(raws: list[Raw]) -> str:
     """Return a unit set in LaTeX as text, or nothing if it is none."""
+    if raws and raws[0].text in FRACTIONS and raws[-1].kind == "}":
+        middle = next((k for k in range(2, len(raws) - 1) if _parts(raws, k)), 0)
+        if not middle:
+            return ""
+        above, below = unit_text(raws[1:middle]), unit_text(raws[middle:])
+        return f"{above}/{below}" if above and below else ""
     words: list[str] = []
     for raw in raws:
         if raw.kind == "text":
@@ -196,7 +206,8 @@ def unit_text(raws: list[Raw]) -> str:
         elif raw.kind == "command":
             if raw.text in _NAMED:
                 prefix = words and words[-1] in ("k", "m", "M", "G", "n", "p", "µ", "h", "c", "d")
-                words.append(_NAMED[raw.text] if prefix else " " + _NAMED[raw.text])
+                joined = prefix or _NAMED[raw.text][:1] in ("^", "")
+                words.append(_NAMED[raw.text] if joined else " " + _NAMED[raw.text])
             elif raw.text in _WORDS:
                 words.append(_WORDS[raw.text])
             else:
@@ -209,3 +220,9 @@ def unit_text(raws: list[Raw]) -> str:
     text = text.replace("^°", "°").replace("° ", "°") if "°" in text else text
     text = re.sub(r" ?/ ?", "/", text).strip()
     return text if is_unit(text) else ""
+
+
+def _parts(raws: list[Raw], at: int) -> bool:
+    """Tell whether a group ends before an index, and another begins there."""
+    depth = sum((raw.kind == "{") - (raw.kind == "}") for raw in raws[:at])
+    return depth == 0 and raws[at].kind == "{" and raws[at - 1].kind == "}"

@@ -49,7 +49,7 @@ for _none in ("notag", "nonumber", "hskip", "kern"):
 
 DROPPED = _words(
     "displaystyle textstyle scriptstyle scriptscriptstyle limits nolimits nonumber notag "
-    "hfill hfil hline toprule midrule bottomrule strut mathstrut allowbreak nobreak relax "
+    "hline toprule midrule bottomrule strut mathstrut allowbreak nobreak relax "
     "noindent centering protect allowdisplaybreaks null mathop mathrel mathbin mathord mathopen "
     "mathclose mathpunct mathinner ensuremath smash boxed mathlarger"
 )
@@ -58,7 +58,7 @@ DROPPED = _words(
 SPACES = {
     **dict.fromkeys((",", "!", "thinspace", "negthinspace", "negmedspace", "negthickspace"), 0),
     **dict.fromkeys((":", ">", ";", " ", "medspace", "thickspace", "enspace", "space", "/"), 1),
-    **dict.fromkeys(("quad", "qquad", "enskip"), 2),
+    **dict.fromkeys(("quad", "qquad", "enskip", "hfill", "hfil"), 2),
 }
 """Spaces and how wide they are: 2 parts statements."""
 

@@ -14,7 +14,7 @@ from closedform.notation.written.differentials import integrals, leibniz
 from closedform.notation.written.grammar import token
 from closedform.notation.written.latex_numbers import scaled
 from closedform.notation.written.names import Names
-from closedform.notation.written.pairs import bounds, pairs
+from closedform.notation.written.pairs import OPERAND_ENDS, bounds, pairs
 from closedform.notation.written.tree import Identity, Literal, Symbol
 from closedform.notation.written.written_errors import StopError, UnusableNotationError
 
@@ -35,7 +35,7 @@ def settled(tokens: Sequence[Token], text: str, names: Names, choices: list[Choi
             found[-1].value = max(found[-1].value, part.value)
         elif part.type != "SPACE" or part.value > 0:
             found.append(part)
-    found = _degrees(_powers_of_ten(found))
+    found = _degrees(_powers_of_ten(_aligned(found)))
     found = barred(_intervals(_noted(found, text)))
     found = decimals(found, text)
     found = columns(found, choices)
@@ -44,6 +44,21 @@ def settled(tokens: Sequence[Token], text: str, names: Names, choices: list[Choi
     found = called(_identities(found, names), names, choices)
     _beside(found, text)
     return found
+
+
+def _aligned(tokens: list[Token]) -> list[Token]:
+    """Return tokens of a line of a display without signs of alignment; some part statements."""
+    out: list[Token] = []
+    depth = 0
+    for index, part in enumerate(tokens):
+        depth += part.type.endswith("OPEN") - part.type.endswith("CLOSE")
+        if depth or part.type != "COLUMN":
+            out.append(part)
+            continue
+        beside = [one.type for one in (*out[-1:], *tokens[index + 1 : index + 2])]
+        if "REL" not in beside and out and out[-1].type in OPERAND_ENDS | {"COMMA"}:
+            out.append(token("SPACE", 2, *bounds(part)))
+    return out
 
 
 def _powers_of_ten(tokens: list[Token]) -> list[Token]:

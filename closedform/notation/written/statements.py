@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 
@@ -33,6 +34,8 @@ __all__ = ["statements_of"]
 
 PARTING = frozenset({"COMMA", "SEMI", "PERIOD", "ROW_END", "IMPLIES", "TEXT", "WORD", "COLON"})
 OPERATORS = frozenset({"PLUS", "MINUS", "PLUS_MINUS", "MINUS_PLUS", "TIMES", "OVER"})
+_BEFORE_NOUGHT = re.compile(r"(?<![0-9])0\s?\^\s?(?:-|\{-\})")
+_WORDS = re.compile(r"\\(?:text|mbox)[a-z]*\{([^{}]*)\}")
 ORDERS = frozenset({"<", "≤", ">", "≥", "≠", "→"})
 
 
@@ -62,6 +65,8 @@ def statements_of(tokens: Sequence[Token], names: Names, text: str) -> tuple[Sta
         part, beside = _condition_behind(segment)
         if not part:
             pass
+        elif drafts and all(one.type == "UNIT" for one in part):
+            drafts[-1].tokens.extend(part)
         elif drafts and _joins(drafts[-1], marks, part):
             last = drafts[-1]
             (last.items[-1] if last.items else last.tokens).extend(part)
@@ -203,7 +208,9 @@ def _statement(draft: Draft, names: Names, text: str) -> Statement:
     last = draft.items[-1] if draft.items else draft.tokens
     start, end = bounds(draft.tokens[0], last[-1])
     members = tuple(_with_determinants(member, names) for member in members)
-    note = "; ".join(note for note in draft.notes if note)
+    if _BEFORE_NOUGHT.search(text, start, end):
+        draft.notes.append("at 0^-")
+    note = "; ".join(_WORDS.sub(r"\1", note) for note in draft.notes if note)
     return Statement(members, relations, unit, tuple(conditions), note, start, end)
 
 

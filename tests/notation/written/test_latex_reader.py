@@ -82,6 +82,7 @@ FEATURES = [
     (r"1.2\times10^{-3}t", "0.0012*t"),
     (r"\num{1.2e-3}+\ang{30}", "0.0012 + 30*(pi/180)"),
     (r"45^\circ", "45*(pi/180)"),
+    (r"3.2\text{e-4}", "0.00032"),
     # matrices
     (r"\begin{bmatrix}1&2\\[6pt]3&4\\\end{bmatrix}", "[[1, 2], [3, 4]]"),
     (r"\left[\begin{array}{c|c}1&2\\\hline 3&4\end{array}\right]", "[[1, 2], [3, 4]]"),
@@ -96,6 +97,7 @@ FEATURES = [
     (r"\int_0^t f(\tau)\,d\tau", "integral(f(tau), tau, 0, t)"),
     (r"\int\mathrm{d}t\,e^{-t}", "integral(exp(-t), t)"),
     (r"\sum_{n=0}^{\infty}\frac{(At)^n}{n!}", "sum((A*t)^n/factorial(n), n, 0, oo)"),
+    (r"\sum_{i=1}^{2}a\,i^2", "sum(a*i^2, i, 1, 2)"),
     (r"\lim_{t\to\infty}x(t)", "limit(x, t, oo)"),
     (r"\mathcal{L}^{-1}\left\{\frac1s\right\}", "inverse_laplace(1/s)"),
     (r"\Bigl[-e^{-\tau}\Bigr]_0^t", "taken_at(-exp(-tau), tau, t, 0)"),
@@ -133,6 +135,8 @@ def test_a_formula_means_what_is_set(text: str, meaning: str) -> None:
         ("x=1 % why\n +t", ["x = 1 + t"]),
         (r"x=1\quad\text{for }0\le t<2", ["x = 1 for 0 <= t < 2"]),
         (r"x=1\quad(t>0)", ["x = 1 for t > 0"]),
+        (r"x&=1&y&=2", ["x = 1", "y = 2"]),
+        (r"\begin{cases}0&(t<0)\\1&t\in[0,2)\end{cases}", ["{0 for t < 0; 1 for 0 <= t < 2}"]),
         (r"x=1,\ t\in[0,2)", ["x = 1 for 0 <= t < 2"]),
         (
             r"f(t)=\begin{cases}1&\text{if }t<1\\0&\text{otherwise}\end{cases}",
@@ -155,6 +159,9 @@ def test_statements_are_parted(text: str, statements: list[str]) -> None:
         (r"R=\SI{4.7}{\kilo\ohm}", "kΩ"),
         (r"y=90\,^{\circ}\mathrm{C}", "°C"),
         (r"y=16{,}3\,\%", "%"),
+        (r"C=100\,\mu\mathrm{F}", "µF"),
+        (r"y=3\,\frac{\mathrm{m}}{\mathrm{s}^2}", "m/s^2"),
+        (r"y=\SI{9.81}{\metre\per\second\squared}", "m/s^2"),
         (r"y=k\,\mathrm{m}", ""),
         (r"y=0.04\,m", ""),
         (r"y=c\Omega", ""),
@@ -237,6 +244,8 @@ REFUSED: list[tuple[str, type[NotReadError], str]] = [
     (r"\quad", UnexpectedPartError, r"\quad"),
     (r"x^2^3", UnusableNotationError, "^3"),
     (r"e^-t", UnusableNotationError, "-t"),
+    (r"2^-t", UnusableNotationError, "^-t"),
+    (r"x^-t", UnusableNotationError, "-t"),
     (r"1+2+\dots+n", UnusableNotationError, r"\dots"),
     (r"2\ 3", UnusableNotationError, "3"),
     (r"\num{1.2(3)}", UnusableNotationError, r"\num"),
@@ -329,6 +338,7 @@ PIECES = st.sampled_from(
 @given(st.lists(PIECES, max_size=25).map("".join))
 @example(r"\left.x\right|_{t=0}^{2}")
 @example(r"\Delta\Delta\Delta")
+@example(r"1\frac2{x}")
 @example(r"{1\over 2\over 3}")
 def test_whatever_is_written_is_read_or_refused(text: str) -> None:
     try:
