@@ -44,13 +44,20 @@ __all__ = [
 
 
 def judge_transition(claim: Claim, setting: Setting) -> Finding:
-    """Judge e^(At)."""
+    """Judge e^(At), or its value at an instant."""
 
     def true(ground: Ground) -> Value:
-        return ground.transition
+        if claim.at is None:
+            return ground.transition
+        instant = setting.value(claim.at, ground)
+        if isinstance(instant, ExactMatrix):
+            raise NotJudgedError("a matrix stands where an instant is wanted")
+        return ground.transition.mapped(lambda entry: entry.at(instant))
 
     def right(ground: Ground) -> Written | None:
         rows = ground.truth.transition
+        if claim.at is not None:
+            return written_back(true(ground))
         if ground.scope.symbols == setting.ground.scope.symbols and rows is not None:
             return Array(rows)
         return written_back(ground.transition)

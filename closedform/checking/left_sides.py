@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from fractions import Fraction
 
 from closedform.checking.facts import Facts
 from closedform.notation.written.tree import (
@@ -245,6 +246,10 @@ def _of_spectral(name: str, facts: Facts) -> Left | None:
 
 def _of_exponential(exponent: Written, facts: Facts) -> Left | None:
     parts = exponent.factors if isinstance(exponent, Product) else (exponent,)
+    rest = tuple(part for part in parts if part != Symbol("A"))
+    if len(rest) == len(parts) - 1 and all(isinstance(part, Literal) for part in rest):
+        instant = rest[0] if len(rest) == 1 else Product(rest)
+        return Left("exp A", at=instant if rest else Literal(Fraction(1)))
     names = [part.name for part in parts if isinstance(part, Symbol)]
     if len(names) != len(parts) or names.count(facts.time) != 1:
         return None

@@ -90,9 +90,17 @@ def diagnosed(claim: Claim, finding: Finding, setting: Setting) -> tuple[Slip | 
         listing = listed(claim, finding, setting)
         if listing is not None:
             return listing, finding.reason
-    trials = list(aimed(claim, finding, setting))
+    trials = [trial for trial in aimed(claim, finding, setting) if _has_its_size(trial)]
     slip = next((found for trial in trials if (found := _slip(trial)) is not None), None)
     return slip, _reason(claim, finding, trials)
+
+
+def _has_its_size(trial: Trial) -> bool:
+    """Whether a member has as many entries as its true value: else no one change mends it."""
+    values = trial.values(trial.tree) or ()
+    return all(
+        len(own) == len(point.true) for own, point in zip(values, trial.points, strict=False)
+    )
 
 
 def _slip(trial: Trial) -> Slip | None:
