@@ -9,9 +9,9 @@ from closedform.notation.written.latex_numbers import literal
 from closedform.notation.written.pairs import OPERAND_ENDS, OPERAND_STARTS, bounds, pairs
 from closedform.notation.written.tree import Symbol
 
-__all__ = ["Choice", "barred", "columns", "decimals"]
+__all__ = ["Doubt", "barred", "columns", "decimals"]
 
-Choice = tuple[tuple[Token, ...], tuple[Token, ...]]
+Doubt = tuple[tuple[Token, ...], tuple[Token, ...]]
 """Tokens as they are read, and as they may also be read."""
 SEVERAL = frozenset({"diag", "max", "min", "atan2"})
 
@@ -99,7 +99,7 @@ def _lists(tokens: list[Token], opening: int, closing: int, commas: int) -> bool
     return whole and not called_ and after != "POWER"
 
 
-def columns(tokens: list[Token], choices: list[Choice]) -> list[Token]:
+def columns(tokens: list[Token], choices: list[Doubt]) -> list[Token]:
     """Return tokens where square brackets with wide gaps are rows of a matrix."""
     partners = pairs(tokens, "")
     new: dict[int, Token] = {}

@@ -31,20 +31,17 @@ def _words(text: str) -> frozenset[str]:
 
 TEXTS = _words(
     "text textrm textnormal textit textbf textsf texttt textup textsl mbox hbox intertext "
-    "shortintertext mathchoice"
+    "shortintertext"
 )
 """Commands whose argument is text."""
 
 VERBATIM = {
-    **dict.fromkeys(TEXTS - {"mathchoice"}, 1),
+    **dict.fromkeys(sorted(TEXTS), 1),
     **dict.fromkeys(("hspace", "vspace", "mspace", "label", "tag", "ref", "eqref", "cite"), 1),
-    **dict.fromkeys(("hskip", "kern"), 0),
     **dict.fromkeys(("num", "ang", "si", "unit", "phantom", "hphantom", "vphantom"), 1),
     **dict.fromkeys(("SI", "qty"), 2),
-    **dict.fromkeys(("color", "textcolor", "cline", "notag", "nonumber"), 1),
+    **dict.fromkeys(("color", "textcolor", "cline"), 1),
 }
-for _none in ("notag", "nonumber", "hskip", "kern"):
-    del VERBATIM[_none]
 """Commands whose arguments are no formulas, and how many they are."""
 
 DROPPED = _words(
@@ -57,8 +54,10 @@ DROPPED = _words(
 
 SPACES = {
     **dict.fromkeys((",", "!", "thinspace", "negthinspace", "negmedspace", "negthickspace"), 0),
-    **dict.fromkeys((":", ">", ";", " ", "medspace", "thickspace", "enspace", "space", "/"), 1),
-    **dict.fromkeys(("quad", "qquad", "enskip", "hfill", "hfil"), 2),
+    **dict.fromkeys(
+        (":", ">", ";", " ", "medspace", "thickspace", "enspace", "enskip", "space", "/"), 1
+    ),
+    **dict.fromkeys(("quad", "qquad", "hfill", "hfil"), 2),
 }
 """Spaces and how wide they are: 2 parts statements."""
 
@@ -68,11 +67,12 @@ FONTS = _words(
 )
 """Fonts in which several letters are one name."""
 BOLD = _words(
-    "mathbf boldsymbol bm pmb bf symbf mathbfit symbfit vec underline underbar "
+    "mathbf boldsymbol bm pmb symbf mathbfit symbfit vec underline underbar "
     "bold mathbfup symbfup overrightarrow"
 )
 """Ways to set a vector or a matrix."""
 CALLIGRAPHIC = _words("mathcal mathscr mathfrak mathbb mathds mathbbm")
+"""Fonts of single letters."""
 SWITCHES = {
     **dict.fromkeys(
         ("rm", "sf", "tt", "it", "sl", "normalfont", "rmfamily", "cal", "mit"), "mathrm"
@@ -113,7 +113,6 @@ FUNCTION_WORDS = {
     "arcsinh": "asinh",
     "arccosh": "acosh",
     "arctanh": "atanh",
-    "arcosech": "acsch",
     "tg": "tan",
     "ctg": "cot",
     "sh": "sinh",
@@ -142,23 +141,17 @@ FUNCTION_WORDS = {
     "abs": "abs",
     "conj": "conj",
     "Diag": "diag",
-    "arctanII": "atan2",
     "inv": "inverse",
     "transpose": "transpose",
     "Adj": "adj",
     "sqrt": "sqrt",
     "Det": "det",
 }
-FUNCTION_WORDS = {
-    word: name for word, name in FUNCTION_WORDS.items() if name != "acsch" and word != "arctanII"
-}
 """Functions by the words that people write for them."""
 
 RELATION_SIGNS = {
-    **dict.fromkeys(
-        ("=", "coloneqq", "eqqcolon", "triangleq", "overset{!}{=}", "colonequals"), "="
-    ),
-    **dict.fromkeys(("doteq", "stackrel", "coloneq", "eqdef"), "="),
+    **dict.fromkeys(("=", "coloneqq", "eqqcolon", "triangleq", "colonequals", "coloneq"), "="),
+    "eqdef": "=",
     **dict.fromkeys(("approx", "simeq", "cong", "approxeq", "thickapprox", "fallingdotseq"), "≈"),
     **dict.fromkeys(("doteq", "sim", "thicksim", "risingdotseq", "doteqdot"), "≈"),
     **dict.fromkeys(("neq", "ne"), "≠"),
@@ -179,7 +172,7 @@ RELATION_SIGNS = {
     "≅": "≈",
     "∝": "∝",
 }
-del RELATION_SIGNS["overset{!}{=}"], RELATION_SIGNS["stackrel"]
+"""Relations by the sign or the command."""
 
 SEPARATING = _words(
     "Rightarrow implies Longrightarrow iff Leftrightarrow Longleftrightarrow therefore because "

@@ -8,7 +8,7 @@ from itertools import pairwise
 
 from lark import Token
 
-from closedform.notation.written.brackets import Choice, barred, columns, decimals
+from closedform.notation.written.brackets import Doubt, barred, columns, decimals
 from closedform.notation.written.calls import called, symbol_name
 from closedform.notation.written.differentials import integrals, leibniz
 from closedform.notation.written.grammar import token
@@ -23,7 +23,7 @@ __all__ = ["settled"]
 TEN = Literal(Fraction(10))
 
 
-def settled(tokens: Sequence[Token], text: str, names: Names, choices: list[Choice]) -> list[Token]:
+def settled(tokens: Sequence[Token], text: str, names: Names, choices: list[Doubt]) -> list[Token]:
     """Return tokens ready for the grammar, but for what parts statements.
 
     Places that can be read in two ways are added to `choices`.
