@@ -101,6 +101,14 @@ class Claim:
         """The members that claim a value, of all groups."""
         return tuple(value for group in self.groups for value in group.values)
 
+    def is_approximate(self, member: Written) -> bool:
+        """Whether a sign like ≈ stands before a member of a chain, or somewhere to its left."""
+        for statement in self.statements:
+            for place, own in enumerate(statement.members):
+                if own is member:
+                    return "≈" in statement.relations[:place]
+        return self.approximate
+
     @property
     def names(self) -> tuple[Written, ...]:
         """The names on the left, of all groups."""

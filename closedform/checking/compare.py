@@ -4,19 +4,21 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from fractions import Fraction
 from typing import Literal as OneOf
 
 from flint import acb, arb, ctx
 
 from closedform.algebra.elementary import Element, NotElementaryError
-from closedform.checking.digits import DigitsMatch, match_digits, told
+from closedform.checking.balls import NoValueError, Quantities
+from closedform.checking.digits import DigitsMatch, largest_difference, match_digits, told
 from closedform.checking.errors import NotJudgedError, SizeError
 from closedform.checking.exact import Scope, Value, exact
 from closedform.checking.ground import SPECTRAL, Ground
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.spread import spread
 from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Literal, Symbol, Written, walk
+from closedform.notation.written.tree import Array, Literal, Symbol, Written, walk
 
 __all__ = ["Comparison", "compare"]
 
@@ -54,8 +56,9 @@ def compare(
 
     Raises:  NotJudgedError where neither exact algebra nor balls decide.
     """
+    true = _single(true)
     try:
-        value = exact(claimed, scope)
+        value = _single(exact(claimed, scope))
     except NotElementaryError as error:
         return _by_digits(claimed, true, ground, unless=error.reason, approximate=approximate)
     except ZeroDivisionError:
@@ -74,6 +77,13 @@ def compare(
             return found
         return Comparison("different", found.reason, different[0], different, found.match)
     return Comparison("different", "", different[0], different)
+
+
+def _single(value: Value) -> Value:
+    """Return the entry of a matrix of one row and column, as of a model with one state."""
+    if isinstance(value, ExactMatrix) and value.shape == (1, 1):
+        return value.rows[0][0]
+    return value
 
 
 def _demand_difference(value: Value, true: Value, entry: tuple[int, int], ground: Ground) -> None:
@@ -119,8 +129,13 @@ def has_decimals(tree: Written) -> bool:
 def _by_digits(
     claimed: Written, true: Value, ground: Ground, *, unless: str, approximate: bool
 ) -> Comparison:
-    """Compare by the printed digits; without any, `unless` is why nothing is decided."""
+    """Compare by the printed digits; without any, `unless` is why equality is not decided.
+
+    That they differ is decided all the same where balls show it at an instant.
+    """
     if not (has_decimals(claimed) or approximate):
+        if _is_apart(claimed, true, ground):
+            return Comparison("different")
         raise NotJudgedError(unless)
     pairs = _pairs(claimed, true)
     variables = sorted(
@@ -142,8 +157,25 @@ def _by_digits(
     return Comparison("different", told(match), match=match)
 
 
+def _is_apart(claimed: Written, true: Value, ground: Ground) -> bool:
+    """Whether two formulas have different values at an instant, for one choice of parameters."""
+    time = ground.facts.time
+    start, end = ground.between.get(time, (Fraction(0), None))
+    length = Fraction(1) if end is None else end - start
+    instants = [start + length * Fraction(k, 7) for k in (2, 3, 5)]
+    try:
+        found = largest_difference(
+            _pairs(claimed, true), time, instants, Quantities((), ground.sampled)
+        )
+    except NoValueError:
+        return False
+    return found is not None
+
+
 def _pairs(claimed: Written, true: Value) -> tuple[tuple[Written, Written], ...]:
     if isinstance(true, Element):
+        while isinstance(claimed, Array) and len(claimed.rows) == len(claimed.rows[0]) == 1:
+            claimed = claimed.rows[0][0]
         return ((claimed, written_back(true)),)
     rows = spread(claimed)
     if rows is None:

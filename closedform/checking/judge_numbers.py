@@ -150,7 +150,8 @@ def judge_identity(claim: Claim, setting: Setting) -> Finding:
         ground = setting.ground_for(opened)
         scope = setting.scope_of(ground)
         value = _first_value(first, setting, ground)
-        found = compare(opened, value, scope, ground, approximate=claim.approximate)
+        about = claim.is_approximate(member)
+        found = compare(opened, value, scope, ground, approximate=about)
         if not found.passes:
             return Finding(
                 "fails",

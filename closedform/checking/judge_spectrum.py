@@ -201,11 +201,12 @@ def _matched(
     """Return which eigenvalue all forms stand for, and how well they do."""
     opened = [setting.opened(form) for form in forms]
     own = [setting.ground_for(form) for form in opened]
+    about = [_is_approximate(form, claim) for form in forms]
     best: tuple[int, Comparison | None] = (0, None)
     for at in _nearest_first(opened[0], setting.scope_of(own[0]), own[0]):
         found = [
-            compare(form, g.eigenvalues[at], setting.scope_of(g), g, approximate=claim.approximate)
-            for form, g in zip(opened, own, strict=True)
+            compare(form, g.eigenvalues[at], setting.scope_of(g), g, approximate=rounded)
+            for form, g, rounded in zip(opened, own, about, strict=True)
         ]
         worst = max(found, key=lambda f: ("equal", "digits", "rounding", "different").index(f.how))
         if worst.passes:
@@ -213,6 +214,15 @@ def _matched(
         if best[1] is None:
             best = at, worst
     return best
+
+
+def _is_approximate(form: Written, claim: Claim) -> bool:
+    """Whether a sign like ≈ stands before the member that lists an eigenvalue."""
+    for statement in claim.statements:
+        for place, member in enumerate(statement.members):
+            if form in _expanded(member):
+                return "≈" in statement.relations[:place]
+    return claim.approximate
 
 
 def _nearest_first(tree: Written, scope: Scope, ground: Ground) -> list[int]:

@@ -43,7 +43,8 @@ def held_against(
         scope = setting.scope_of(ground)
         truth = true(ground)
         try:
-            found = compare(opened, truth, scope, ground, approximate=claim.approximate)
+            about = claim.is_approximate(value)
+            found = compare(opened, truth, scope, ground, approximate=about)
         except (UnknownNameError, NotJudgedError) as error:
             skipped.append(error)
             continue

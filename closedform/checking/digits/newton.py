@@ -41,7 +41,7 @@ def refined(
             return _moved(u, scale, free, _step(slopes, rests, free, arb(0)))
         trial = _moved(u, scale, free, _step(slopes, rests, free, damping))
         found = equations.at(trial)
-        if found.is_finite:
+        if found.is_finite and len(found.residuals) == len(system.residuals):
             new_slopes, new_rests = equations.scaled(found, scale)
             new_cost = _compared(system, found, slopes, scale)
             if new_cost < cost:
