@@ -24,7 +24,8 @@ class Model:
     Shapes:  `matrix` is n rows of n entries, `initial` has n, n = len(states) >= 1.
     Units:   `times` carry the unit of `time`; the model itself is unit-free.
     Exact:   every number is a `SurdSum`.
-    `name` is the stem under which results are filed.
+    `name` is the stem under which results are filed; `reserved` are names that are in use
+    beside those of states and outputs.
     """
 
     name: str
@@ -36,3 +37,4 @@ class Model:
     times: tuple[SurdSum, ...] = ()
     time: str = "t"
     summary: str = ""
+    reserved: tuple[str, ...] = ()

@@ -93,7 +93,7 @@ class ParametricModel:
     already.  `domain` holds the assumptions, then `conditions`, then that the denominators
     of entries and definitions are not zero, as far as that does not follow.  `values` is the
     value set of the file where every parameter has a value, `value_sets` the rows of
-    [[values]].
+    [[values]].  `reserved` are names that are in use beside those of all these.
     """
 
     name: str
@@ -113,6 +113,7 @@ class ParametricModel:
     times: tuple[SurdSum, ...] = ()
     time: str = "t"
     summary: str = ""
+    reserved: tuple[str, ...] = ()
 
     @property
     def occurring(self) -> frozenset[str]:

@@ -62,7 +62,8 @@ class Contents:
     """The equations of a model as elements of the field, and all else that uses parameters.
 
     `used` are the names in its formulas.  `elements` have to be defined for all values of the
-    parameters, beside those of the equations; `key` is where they stand.
+    parameters, beside those of the equations; `key` is where they stand.  `reserved` are
+    further names that are in use.
     """
 
     states: tuple[str, ...]
@@ -72,6 +73,7 @@ class Contents:
     used: frozenset[str]
     elements: tuple[Scalar, ...] = ()
     key: str = "matrix"
+    reserved: tuple[str, ...] = ()
 
     @property
     def entries(self) -> tuple[Scalar, ...]:
@@ -169,6 +171,7 @@ def with_parameters(
         times=heading.times,
         time=heading.time,
         summary=heading.summary,
+        reserved=contents.reserved,
     )
 
 

@@ -280,7 +280,8 @@ def written_beside(
 
 
 def _taken(model: Model) -> frozenset[str]:
-    return frozenset({*model.states, *(o.name for o in model.outputs), model.time})
+    outputs = (output.name for output in model.outputs)
+    return frozenset({*model.states, *outputs, model.time, *model.reserved})
 
 
 def _parts(

@@ -36,6 +36,7 @@ def names_of(response: ParametricResponse) -> set[str]:
     model = response.model
     return {
         *model.states,
+        *model.reserved,
         model.time,
         *(output.name for output in model.outputs),
         *model.field.parameters,

@@ -231,6 +231,13 @@ class Assembly(Generic[T]):
         found += [1 / divisor for divisor in self.form.divisors]
         return tuple(found)
 
+    @property
+    def reserved(self) -> tuple[str, ...]:
+        """Names of the model that are none of its states: of other unknowns, inputs, outputs."""
+        inputs = (given.name for given in self.inputs if given.name)
+        found = (*self.statement.unknowns, *inputs, *(output.name for output in self.outputs))
+        return tuple(dict.fromkeys(name for name in found if name not in self.names))
+
     def model(self, stacked: Model | ParametricModel) -> DrivenModel:
         """Return the driven model, given its stacked one.
 

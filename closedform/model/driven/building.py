@@ -43,6 +43,7 @@ def driven_model(mapping: Mapping[str, object], heading: Heading, source: Source
         times=heading.times,
         time=heading.time,
         summary=heading.summary,
+        reserved=assembly.reserved,
     )
     return assembly.model(stacked)
 
@@ -61,5 +62,6 @@ def _open_model(
         used=frozenset(numerals.used),
         elements=assembly.elements,
         key=key,
+        reserved=assembly.reserved,
     )
     return assembly.model(with_parameters(opening, mapping, heading, contents))

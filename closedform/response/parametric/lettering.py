@@ -151,6 +151,7 @@ def _taken(model: ParametricModel) -> set[str]:
     """Every name of the model: nothing else is given one that prints like it."""
     return {
         *model.states,
+        *model.reserved,
         model.time,
         *(output.name for output in model.outputs),
         *(parameter.name for parameter in model.parameters),
