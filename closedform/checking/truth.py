@@ -55,7 +55,8 @@ class Truth:
     derivatives with primes (x, x').  `jets` says which unknown and derivative each state is.
     `matrix` n x n; `initial` n entries, None if other conditions fix the solution; `drive` the
     n entries of B u(t) on each interval, empty if the model is free.
-    `characteristic` is det(lambda I - A) in Symbol("lambda"), monic.
+    `characteristic` is det(lambda I - A) in Symbol("lambda"), monic; where a parameter is called
+    lambda, it is in s, z or xi.
     `transition` is e^(At), n x n, None where it is not written out.
     `solution` maps states, other derivatives that follow (x''), eliminated unknowns and outputs
     to their pieces.  `particular` is the response without the free terms where the engine

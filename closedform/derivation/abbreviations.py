@@ -10,7 +10,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 
 from closedform.algebra.field import Polynomial
-from closedform.derivation.formulas import LAMBDA, eigenvalue_formula, polynomial_formula
+from closedform.derivation.formulas import eigenvalue_formula, polynomial_formula, root_of
 from closedform.derivation.step import Step
 from closedform.notation.expression import Name
 from closedform.response.modes import Mode
@@ -68,7 +68,7 @@ def _rows(
         yield {
             "numerator": None
             if shared
-            else polynomial_formula(response.field, key.numerator, LAMBDA),
+            else polynomial_formula(response.field, key.numerator, root_of(response)),
             "factor": str(response.spectrum.factors.index(mode.factor) + 1),
             "at": eigenvalue_formula(mode),
             "constants": [

@@ -6,6 +6,7 @@ from collections.abc import Iterator
 
 from closedform.derivation.abbreviations import abbreviations_step
 from closedform.derivation.canonical_steps import canonical_steps
+from closedform.derivation.formulas import letters_beside, names_of, root_of
 from closedform.derivation.proof.statements import prove_statements
 from closedform.derivation.resolvent_steps import resolvent_steps
 from closedform.derivation.result_steps import (
@@ -45,7 +46,8 @@ def derive(response: Response, record: VerificationRecord, *, digits: int = 6) -
     steps = tuple(_steps(response, digits))
     checks = (*record.checks, prove_statements(response, steps, digits))
     ends = (verification_step(checks, response.model.time), cautions_step())
-    return Derivation(response.model.title, (*steps, *ends), checks)
+    letters = letters_beside(names_of(response), root_of(response))
+    return Derivation(response.model.title, (*steps, *ends), checks, letters)
 
 
 def _steps(response: Response, digits: int) -> Iterator[Step]:

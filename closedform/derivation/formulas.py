@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from fractions import Fraction
 from math import lcm
 
 from closedform.algebra.field import BaseField, Polynomial
 from closedform.algebra.surds import SurdSum
-from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Symbol
+from closedform.derivation.step import IMAGINARY_UNIT, Matrix, OwnLetters, Side, Symbol
 from closedform.notation.expression import (
     ONE,
     ZERO,
@@ -19,12 +19,14 @@ from closedform.notation.expression import (
     operations,
     power_of,
 )
+from closedform.notation.jets import jet_of
+from closedform.notation.latex.names import printed_key
 from closedform.notation.plain import plain
 from closedform.notation.terms import sum_of, surd_formula, weighted
 from closedform.response.modes import Mode
+from closedform.response.response import Response
 
 __all__ = [
-    "LAMBDA",
     "ONE",
     "ZERO",
     "A",
@@ -35,13 +37,48 @@ __all__ = [
     "eigenvalue_symbol",
     "frequency_formula",
     "in_order",
+    "letters_beside",
+    "names_of",
     "number_formula",
     "polynomial_formula",
+    "root_of",
+    "root_variable",
     "surd_matrix",
 ]
 
 A = Symbol("matrix", letter="A")
-LAMBDA = Name("lambda")
+ROOTS = ("lambda", "s", "z", "xi")
+"""OwnLetters for the variable of a characteristic polynomial, the usual one first."""
+
+
+def letters_beside(names: Iterable[str], root: Name) -> OwnLetters:
+    """Return the letters of a document of a model with these names.
+
+    With a current i the imaginary unit is j, as electrical engineers have it, if that is free.
+    """
+    letters = {printed_key(jet_of(name)[0]) for name in names}
+    if "i" not in letters:
+        return OwnLetters(root)
+    index = next((letter for letter in "mnl" if letter not in letters), "i")
+    return OwnLetters(root, "i" if "j" in letters else "j", index, Name("i"))
+
+
+def root_variable(names: Iterable[str]) -> Name:
+    """Return the variable of the characteristic polynomial: lambda, unless a name begins so."""
+    bases = {printed_key(name).split("_")[0] for name in names}
+    return Name(next((letter for letter in ROOTS if letter not in bases), "xi_r"))
+
+
+def root_of(response: Response) -> Name:
+    """Return the variable of the characteristic polynomial in a derivation without parameters."""
+    return root_variable(names_of(response))
+
+
+def names_of(response: Response) -> tuple[str, ...]:
+    """Return every name of a model without parameters."""
+    model = response.model
+    outputs = (output.name for output in model.outputs)
+    return (*model.states, model.time, *outputs, *model.reserved)
 
 
 def number_formula(value: SurdSum | str) -> Expression:
@@ -112,9 +149,9 @@ def eigenvalue_formula(mode: Mode, sign: int = 1) -> Expression:
     return in_order([*parts, frequency_formula(one, mode)])
 
 
-def eigenvalue_symbol(numbers: Sequence[int]) -> Symbol:
+def eigenvalue_symbol(root: Name, numbers: Sequence[int]) -> Symbol:
     """Return lambda_k, or lambda_(k,k+1) for a pair."""
-    return Symbol("scalar", letter="lambda", indices=(",".join(map(str, numbers)),))
+    return Symbol("scalar", letter=root.text, indices=(",".join(map(str, numbers)),))
 
 
 def column(entries: Sequence[Expression]) -> Matrix:

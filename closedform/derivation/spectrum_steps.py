@@ -11,13 +11,13 @@ from closedform.algebra.enclosure import ball_of, certified_decimal
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
 from closedform.derivation.formulas import (
-    LAMBDA,
     ZERO,
     A,
     column,
     eigenvalue_symbol,
     number_formula,
     polynomial_formula,
+    root_of,
     surd_matrix,
 )
 from closedform.derivation.step import Side, Statement, Step, Symbol
@@ -98,11 +98,11 @@ def _at(symbol: Symbol, t: Expression) -> Symbol:
 
 def characteristic_polynomial_step(response: Response) -> Step:
     """det(lambda I - A), expanded and factored."""
-    field, spectrum = response.field, response.spectrum
-    expanded = polynomial_formula(field, spectrum.characteristic_polynomial, LAMBDA)
+    field, spectrum, root = response.field, response.spectrum, root_of(response)
+    expanded = polynomial_formula(field, spectrum.characteristic_polynomial, root)
     sides: list[Side] = [
-        Symbol("characteristic polynomial"),
-        Symbol("determinant", letter="A"),
+        Symbol("characteristic polynomial", argument=root),
+        Symbol("determinant", argument=root, letter="A"),
         expanded,
     ]
     factored = _factored(response)
@@ -117,18 +117,19 @@ def characteristic_polynomial_step(response: Response) -> Step:
 
 
 def _factored(response: Response) -> Expression:
+    root = root_of(response)
     return product(
-        power_of(polynomial_formula(response.field, factor.p, LAMBDA), factor.multiplicity)
+        power_of(polynomial_formula(response.field, factor.p, root), factor.multiplicity)
         for factor in response.spectrum.factors
     )
 
 
 def eigenvalues_step(response: Response, digits: int) -> Step:
     """List the eigenvalues with multiplicity, index and blocks."""
-    statements, rows = [], []
+    statements, rows, root = [], [], root_of(response)
     for eigenvalue in eigenvalues_of(response):
         mode, factor = eigenvalue.mode, eigenvalue.factor
-        symbol = eigenvalue_symbol(eigenvalue.numbers)
+        symbol = eigenvalue_symbol(root, eigenvalue.numbers)
         value = _value(mode)
         if value is not None:
             statements.append(Statement("eigenvalues", (symbol, value)))
@@ -201,7 +202,7 @@ def _field_name(response: Response) -> str:
 
 def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
     """Say what each named root is: one step for every factor that needs names."""
-    constants = {c.name: c for c in response.closed_forms.constants}
+    constants, root = {c.name: c for c in response.closed_forms.constants}, root_of(response)
     for factor in response.spectrum.factors:
         named = [
             (eigenvalue, constants[name])
@@ -212,11 +213,11 @@ def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
         ]
         if not named:
             continue
-        polynomial = polynomial_formula(response.field, factor.p, LAMBDA)
+        polynomial = polynomial_formula(response.field, factor.p, root)
         statements = [Statement("polynomial", (polynomial, ZERO))]
         even = factor.roots.form == "even"
         if even and factor.roots.squares is not None:
-            statements = _even_statements(response, factor)
+            statements = _even_statements(response, factor, root)
         yield Step(
             "named_roots",
             tuple(statements),
@@ -224,20 +225,22 @@ def named_roots_steps(response: Response, digits: int) -> Iterator[Step]:
                 "even": even,
                 "degree": factor.degree,
                 "whole": factor.degree == len(response.model.states),
-                "rows": [_row(eigenvalue, constant, digits) for eigenvalue, constant in named],
+                "rows": [
+                    _row(root, eigenvalue, constant, digits) for eigenvalue, constant in named
+                ],
             },
             rests_on=("eigenvalues",),
             depth="summary",
         )
 
 
-def _even_statements(response: Response, factor: Factor) -> list[Statement]:
+def _even_statements(response: Response, factor: Factor, root: Name) -> list[Statement]:
     """The polynomial in mu = (lambda - a)^2."""
     polynomial = polynomial_formula(response.field, factor.roots.squares, Name("mu"))
     centre = response.field.surds(factor.roots.centre)
-    base: Expression = LAMBDA
+    base: Expression = root
     if not centre.is_zero:
-        base = sum_of([LAMBDA, surd_formula(-centre)])
+        base = sum_of([root, surd_formula(-centre)])
     square = power_of(base, 2)
     return [
         Statement("substitution", (Name("mu"), square)),
@@ -245,7 +248,9 @@ def _even_statements(response: Response, factor: Factor) -> list[Statement]:
     ]
 
 
-def _row(eigenvalue: Eigenvalue, constant: NamedConstant, digits: int) -> dict[str, object]:
+def _row(
+    root: Name, eigenvalue: Eigenvalue, constant: NamedConstant, digits: int
+) -> dict[str, object]:
     definition = constant.definition
     if not isinstance(definition, RootPart):
         raise TypeError("only parts of roots have rows here")
@@ -253,7 +258,7 @@ def _row(eigenvalue: Eigenvalue, constant: NamedConstant, digits: int) -> dict[s
         "name": Name(constant.name),
         "interval": isolating_interval(definition),
         "part": definition.part,
-        "eigenvalue": eigenvalue_symbol(eigenvalue.numbers),
+        "eigenvalue": eigenvalue_symbol(root, eigenvalue.numbers),
         "real": eigenvalue.mode.kind == "real",
         "decimal": constant_decimal(constant, digits),
     }

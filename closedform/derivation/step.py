@@ -14,10 +14,23 @@ from closedform.notation.expression import Expression, Name
 if TYPE_CHECKING:  # a step is light, and the room of proofs is not
     from closedform.verification.record import Check
 
-__all__ = ["IMAGINARY_UNIT", "Depth", "Derivation", "Matrix", "Side", "Statement", "Step", "Symbol"]
+__all__ = [
+    "IMAGINARY_UNIT",
+    "LAMBDA",
+    "Depth",
+    "Derivation",
+    "Matrix",
+    "OwnLetters",
+    "Side",
+    "Statement",
+    "Step",
+    "Symbol",
+]
 
 IMAGINARY_UNIT = Name("@i")
-"""The upright i.  No model can name a quantity so; a state ``i`` stays an italic letter."""
+"""The upright i, or j.  No model can name a quantity so; a state ``i`` is an italic letter."""
+LAMBDA = Name("lambda")
+"""The usual variable of a characteristic polynomial."""
 
 
 Depth = Literal["summary", "working", "full"]
@@ -79,6 +92,21 @@ class Step:
 
 
 @dataclass(frozen=True, slots=True)
+class OwnLetters:
+    """What a document calls its own quantities, so that no name of the model prints alike.
+
+    `root` is the variable of the characteristic polynomial, `unit` the upright letter of the
+    imaginary unit, `index` the letter by which factors are counted; `beside` is the quantity
+    of the model that is called i, None if none is.
+    """
+
+    root: Name = LAMBDA
+    unit: Literal["i", "j"] = "i"
+    index: str = "i"
+    beside: Name | None = None
+
+
+@dataclass(frozen=True, slots=True)
 class Derivation:
     """The steps in the order in which they follow from one another.
 
@@ -88,3 +116,4 @@ class Derivation:
     title: str
     steps: tuple[Step, ...]
     checks: tuple[Check, ...] = ()
+    letters: OwnLetters = OwnLetters()

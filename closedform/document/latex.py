@@ -8,7 +8,7 @@ from closedform.derivation.step import Side, Statement
 from closedform.document.display import RELATIONS, Display, displayed, fits
 from closedform.document.symbols import side_box
 from closedform.notation.latex.escape import escaped
-from closedform.notation.latex.names import name_box
+from closedform.notation.latex.names import IMAGINARY, name_box
 
 __all__ = [
     "Display",
@@ -90,7 +90,7 @@ def decimal(text: str) -> str:
     if match := COMPLEX.fullmatch(text.strip()):
         real, size = (_signed(match[part]) if match[part] else "" for part in ("real", "size"))
         sign = {"+": "+", "-": "-", "\u2212": "-", "±": r"\pm"}.get(match["sign"], "")
-        return f"${real} {sign} {size}\\mathrm{{i}}$".replace("$ ", "$")
+        return f"${real} {sign} {size}{name_latex(IMAGINARY)}$".replace("$ ", "$")
     sign, whole, part = split_decimal(text)
     return escaped(text) if not whole else f"${sign}{whole}{part}$"
 

@@ -2,14 +2,23 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable
+from collections.abc import Callable, Iterable, Mapping
 from typing import Any
 
-from closedform.derivation.step import Side, Statement, Step, Symbol
-from closedform.notation.expression import Call, Expression, Name, Power, Product, number
+from closedform.derivation.step import IMAGINARY_UNIT, LAMBDA, Matrix, Side, Statement, Step, Symbol
+from closedform.notation.expression import (
+    Call,
+    Expression,
+    Name,
+    Power,
+    Product,
+    is_expression,
+    names_in,
+    number,
+)
 from closedform.notation.latex.escape import escaped
 
-__all__ = ["FILTERS", "FUNCTIONS", "stacked_symbol"]
+__all__ = ["FILTERS", "FUNCTIONS", "is_complex", "stacked_symbol"]
 
 NUMBER_WORDS = "no one two three four five six seven eight nine ten eleven twelve"
 WORDS = NUMBER_WORDS.split()
@@ -18,6 +27,26 @@ WORDS = NUMBER_WORDS.split()
 def said(step: Step, *says: str) -> list[Statement]:
     """Return the step's statements that say one of these, in order."""
     return [statement for statement in step.statements if statement.says in says]
+
+
+def is_complex(item: object) -> bool:
+    """Whether the imaginary unit is in a step, or in anything that a step holds."""
+    match item:
+        case Step(_, statements, facts):
+            return is_complex(statements) or is_complex(facts)
+        case Statement(_, sides):
+            return is_complex(sides)
+        case Matrix(rows):
+            return is_complex(rows)
+        case Symbol("pair"):
+            return True
+        case Symbol(argument=argument, parts=parts):
+            return is_complex(argument) or is_complex(parts)
+        case Mapping():
+            return any(map(is_complex, item.values()))
+        case tuple() | list():
+            return any(map(is_complex, item))
+    return is_expression(item) and IMAGINARY_UNIT.text in names_in(item)
 
 
 def symbol(
@@ -101,11 +130,14 @@ def add_one(value: int) -> int:
     return value + 1
 
 
-def quotient(several: bool) -> Side:  # noqa: FBT001  called from templates only
+def quotient(
+    several: bool,  # noqa: FBT001  called from templates only
+    argument: Name = LAMBDA,
+    index: str = "i",
+) -> Side:
     """Return r(lambda)/p'(lambda), with an index on p if there are several factors."""
-    argument = Name("lambda")
     above = Symbol("scalar", letter="r", argument=argument)
-    below = Symbol("scalar", ("i",) if several else (), argument, letter="p", order=1)
+    below = Symbol("scalar", (index,) if several else (), argument, letter="p", order=1)
     return Symbol("quotient", parts=(above, below))
 
 

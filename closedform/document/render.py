@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import get_args
 
-from closedform.derivation.step import Depth, Derivation, Symbol
+from closedform.derivation.step import IMAGINARY_UNIT, Depth, Derivation, Symbol
 from closedform.document.phrases import stacked_symbol
 from closedform.document.printed import Printed
 from closedform.document.references import References
@@ -18,7 +18,7 @@ from closedform.document.templating import (
 )
 from closedform.errors import InputError
 from closedform.notation.expression import Name
-from closedform.notation.latex.names import derivatives_of, is_time
+from closedform.notation.latex.names import derivatives_of, imaginary_unit, is_time
 
 __all__ = [
     "DEPTHS",
@@ -101,7 +101,7 @@ def rendered(
     if depth not in DEPTHS:
         raise UnknownDepthError(depth)
 
-    time, references = _time(derivation), References()
+    time, references, letters = _time(derivation), References(), derivation.letters
     found = environment(template, references)
     shown = DEPTHS[: DEPTHS.index(depth) + 1]
     steps = [step for step in derivation.steps if step.depth in shown]
@@ -112,6 +112,9 @@ def rendered(
         "depth": depth,
         "shown": frozenset(step.kind for step in steps),
         "time": time,
+        "root": letters.root,
+        "unit": IMAGINARY_UNIT,
+        "letters": letters,
         "in_time": is_time(time.text),
         "form": Symbol("matrix", ("R",) if "real_form" in kinds else (), letter="J"),
         "foot": shortened(derivation.title),
@@ -126,7 +129,7 @@ def rendered(
         references.next_pass()
         return main.render(values)
 
-    with derivatives_of(time.text):
+    with derivatives_of(time.text), imaginary_unit(letters.unit):
         text = answered(template, twice)
     return Rendered(text, references.printed, time.text)
 

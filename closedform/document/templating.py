@@ -11,7 +11,7 @@ from typing import TYPE_CHECKING, TypeVar
 
 from closedform.document.display import narrow
 from closedform.document.latex import fits
-from closedform.document.phrases import FILTERS, FUNCTIONS
+from closedform.document.phrases import FILTERS, FUNCTIONS, is_complex
 from closedform.document.references import References
 from closedform.errors import InputError
 
@@ -158,6 +158,7 @@ def environment(template: str | Path, references: References) -> Environment:
         "refer": references.refer,
         "section_label": references.section,
     }
+    made.tests["complex"] = is_complex
     made.tests["fits"] = fits
     made.tests["narrow"] = narrow
     return made

@@ -36,11 +36,10 @@ LONGEST_NAME = 64
 USABLE = re.compile("[A-Za-z][A-Za-z0-9_]*")
 KEPT = {
     "e": "in a formula people take it for the base of exp; write 'e_1' or a word such as 'error'",
-    "i": "in a formula people take it for the imaginary unit; write 'i_L', 'i_1' or 'current'",
     "pi": "in a formula people take it for the number 3.14159...; write 'p_i' or 'pi_1'",
 }
 """Names that mean something else in a formula, and what to write."""
-LETTERS_OF_WRITE_UPS = ("lambda", "mu", "s", "p", "g", "r")
+LETTERS_OF_WRITE_UPS = ("lambda", "mu", "s", "p", "g", "r", "i")
 VARYING = ("an input", "an unknown")
 """What depends on the time, and so may have it in brackets."""
 NOTHING: Mapping[str, str] = {}

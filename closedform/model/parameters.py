@@ -39,6 +39,8 @@ USUAL_ASSUMPTIONS: dict[str, Assumption] = {
     "non-zero": "nonzero",
 }
 """How people say it elsewhere."""
+LETTERS = ("lambda",)
+"""Python's words that are letters in mathematics: rates go by them."""
 KEYS = ("assume", "value", "unit", "meaning")
 USUAL_KEYS = {
     "assumption": "assume",
@@ -78,9 +80,8 @@ def check_words(table: Mapping[str, object], key: str, source: Source) -> None:
     """Raise UnusableNameError for a name that a parameter may not have, though a state may."""
     for name in table:
         reason = None
-        if iskeyword(name):
-            spelling = "'lamda', which prints alike" if name == "lambda" else f"'{name}_1'"
-            reason = f"Python, which may read the results, keeps this word; write {spelling}"
+        if iskeyword(name) and name not in LETTERS:
+            reason = f"Python, which may read the results, keeps this word; write '{name}_1'"
         elif name == "label":
             reason = "in [[values]] the word stands for the label of a row; choose another"
         if reason:

@@ -316,7 +316,7 @@ STATEMENTS: list[tuple[str, str, type[InputError], str]] = [
     ('"x2"', '"sin"', errors.UnusableNameError, "it is the name of a function"),
     ('"x2"', '"pi"', errors.UnusableNameError, "for the number 3.14159...; write 'p_i' or"),
     ('"x2"', '"e"', errors.UnusableNameError, "the base of exp; write 'e_1' or a word such as"),
-    ('"x2"', '"i"', errors.UnusableNameError, "the imaginary unit; write 'i_L', 'i_1' or"),
+    ("[-2, -0.1]", '[-2, "i"]', formula_errors.UndeclaredNameError, "there is no imaginary unit"),
     ("title", "A = 1\ntitle", errors.UnknownKeyError, "no key 'A'; did you mean 'matrix'?"),
     ("title", "Title = 1\ntitle", errors.UnknownKeyError, "did you mean 'title'?"),
     ('"x2"', '"t"', errors.UnusableNameError, "it is the name of the time"),

@@ -8,7 +8,7 @@ from closedform.model.building import system
 from closedform.model.errors import UnusableNameError
 
 
-@pytest.mark.parametrize("name", ["lambda", "lamda", "mu", "s", "p", "g", "r"])
+@pytest.mark.parametrize("name", ["lambda", "lamda", "mu", "s", "p", "g", "r", "i"])
 def test_a_letter_of_the_write_up_is_no_name_of_the_time(name: str) -> None:
     with pytest.raises(UnusableNameError, match=r"a write-up uses this letter .* 't' or 'tau'"):
         system([[-1]], initial=[1], time=name)

@@ -8,11 +8,11 @@ from closedform.algebra.field import BaseField, Scalar
 from closedform.algebra.surds import SurdSum
 from closedform.checking.truth import Piece
 from closedform.derivation.driven.differentiation import derivative_of
+from closedform.derivation.formulas import root_variable
 from closedform.notation.expression import (
     ONE,
     ZERO,
     Expression,
-    Name,
     power_of,
     product,
 )
@@ -22,7 +22,6 @@ from closedform.notation.written.tree import Literal, Written
 from closedform.response.driven.composition import element_formula
 
 __all__ = [
-    "LAMBDA",
     "WHOLE",
     "Functions",
     "element_written",
@@ -35,8 +34,6 @@ __all__ = [
     "written_from",
 ]
 
-LAMBDA = "lambda"
-"""The unknown of a characteristic polynomial."""
 
 Functions = Mapping[str, tuple[Expression, ...]]
 """For each name a formula in every interval."""
@@ -65,10 +62,13 @@ def rows_written(rows: Iterable[Iterable[Expression]]) -> tuple[tuple[Written, .
 
 
 def polynomial_written(field: BaseField, coefficients: Sequence[Scalar]) -> Written:
-    """Return the polynomial in lambda with these coefficients, highest first."""
-    degree = len(coefficients) - 1
+    """Return the polynomial with these coefficients, highest first.
+
+    Its variable is lambda, or the next letter that no parameter begins with.
+    """
+    degree, root = len(coefficients) - 1, root_variable(getattr(field, "parameters", ()))
     terms = [
-        _term(element_formula(field, c), power_of(Name(LAMBDA), degree - k))
+        _term(element_formula(field, c), power_of(root, degree - k))
         for k, c in enumerate(coefficients)
         if c
     ]

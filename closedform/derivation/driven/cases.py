@@ -24,6 +24,7 @@ from closedform.derivation.driven.state_steps import state_form_step
 from closedform.derivation.driven.values_steps import driven_numbers_step
 from closedform.derivation.driven.verification_step import driven_cases_step
 from closedform.derivation.driven.writing import Writing
+from closedform.derivation.formulas import letters_beside
 from closedform.derivation.parametric.case_steps import cases_step
 from closedform.derivation.parametric.definitions import definitions_of
 from closedform.derivation.parametric.eigenvalue_steps import definitions_step, eigenvalues_step
@@ -37,7 +38,7 @@ from closedform.derivation.parametric.proof.ground import Ground, defined_in
 from closedform.derivation.parametric.proof.numbers import Given
 from closedform.derivation.parametric.proof.statements import prove_case_statements
 from closedform.derivation.parametric.result_steps import branch_step
-from closedform.derivation.parametric.variables import names_of
+from closedform.derivation.parametric.variables import names_of, variables_of
 from closedform.derivation.proof.evaluation import ball_at
 from closedform.derivation.result_steps import cautions_step
 from closedform.derivation.step import Derivation, Matrix, Step
@@ -94,7 +95,8 @@ def in_cases(
         driven_cases_step(checks, records, stacked, hats=model.generator is not None),
         cautions_step(),
     )
-    return Derivation(model.title, (*steps, *ends), checks)
+    letters = letters_beside(Writing(model).names, variables_of(stacked).root)
+    return Derivation(model.title, (*steps, *ends), checks, letters)
 
 
 _OF_THE_MATRIX = frozenset(

@@ -25,6 +25,7 @@ from closedform.derivation.driven.state_steps import state_form_step
 from closedform.derivation.driven.values_steps import driven_values_step
 from closedform.derivation.driven.verification_step import driven_verification_step
 from closedform.derivation.driven.writing import Writing, calls_in
+from closedform.derivation.formulas import letters_beside
 from closedform.derivation.parametric.proof.ground import said_in
 from closedform.derivation.proof.evaluation import expressions_in
 from closedform.derivation.proof.statements import prove_statements
@@ -91,7 +92,8 @@ def in_numbers(
         driven_verification_step(checks, model.time, hats=model.generator is not None),
         cautions_step(),
     )
-    return Derivation(model.title, (*first, *middle, *results, *last, values, *ends), checks)
+    steps = (*first, *middle, *results, *last, values, *ends)
+    return Derivation(model.title, steps, checks, letters_beside(writing.names, writing.root))
 
 
 def names_printed(steps: Sequence[Step]) -> frozenset[str]:

@@ -7,10 +7,11 @@ from dataclasses import dataclass
 
 from closedform.algebra.field import FieldMatrix, Scalar
 from closedform.algebra.parameter_field import ParameterField
-from closedform.derivation.formulas import surd_matrix
+from closedform.derivation.formulas import root_variable, surd_matrix
 from closedform.derivation.parametric.formulas import as_given
 from closedform.derivation.step import Matrix, Side, Symbol
 from closedform.model.driven.model import DrivenModel, Input
+from closedform.model.parametric import ParametricModel
 from closedform.notation.expression import (
     ONE,
     ZERO,
@@ -124,18 +125,24 @@ class Writing:
         return tuple(_label(given, k, taken) for k, given in enumerate(model.inputs, start=1))
 
     @property
-    def _bases(self) -> set[str]:
-        """The letters of all names of the model, without indices."""
+    def names(self) -> set[str]:
+        """All names of the model, and those of the columns of its inputs."""
         model = self.model
         names = {*model.rows, *model.unknowns, model.time, *(i.name for i in model.inputs)}
-        names |= {*(label.text for label in self.inputs), *getattr(model.field, "parameters", ())}
-        return {printed_key(name).split("_")[0] for name in names}
+        if isinstance(model.stacked, ParametricModel):
+            definitions = (*model.stacked.abbreviations, *model.stacked.restated)
+            names |= {*model.stacked.field.parameters, *(d.name for d in definitions)}
+        return names | {label.text for label in self.inputs}
+
+    @property
+    def _bases(self) -> set[str]:
+        """The letters of all names of the model, without indices."""
+        return {printed_key(name).split("_")[0] for name in self.names}
 
     @property
     def root(self) -> Name:
         """The variable of characteristic polynomials: lambda, unless the model uses it."""
-        taken = self._bases
-        return Name(next(letter for letter in ("lambda", "s", "z", "xi") if letter not in taken))
+        return root_variable(self.names)
 
     def letter(self, letter: str) -> str:
         """Return a letter, or another in its place that no name of the model begins with."""

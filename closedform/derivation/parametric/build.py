@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 
+from closedform.derivation.formulas import letters_beside
 from closedform.derivation.parametric.case_steps import cases_step
 from closedform.derivation.parametric.definitions import definitions_of
 from closedform.derivation.parametric.eigenvalue_steps import definitions_step, eigenvalues_step
@@ -20,7 +21,7 @@ from closedform.derivation.parametric.result_steps import (
     branch_step,
     case_solution_step,
 )
-from closedform.derivation.parametric.variables import names_of
+from closedform.derivation.parametric.variables import names_of, variables_of
 from closedform.derivation.parametric.verification_step import verification_step
 from closedform.derivation.result_steps import cautions_step
 from closedform.derivation.step import Derivation, Step
@@ -54,7 +55,8 @@ def derive_cases(
     steps = tuple(_steps(response, records, numbers or (), digits))
     checks = (*records.whole.checks, prove_case_statements(response, steps))
     ends = (verification_step(checks, records, response), cautions_step())
-    return Derivation(response.model.title, (*steps, *ends), checks)
+    letters = letters_beside(names_of(response), variables_of(response).root)
+    return Derivation(response.model.title, (*steps, *ends), checks, letters)
 
 
 def _steps(

@@ -13,10 +13,12 @@ from flint import acb, acb_mat
 from closedform.algebra.enclosure import ball_of
 from closedform.algebra.spectrum import Factor
 from closedform.algebra.surds import SurdSum
+from closedform.derivation.formulas import root_of
 from closedform.derivation.proof.evaluation import matrix_at
 from closedform.derivation.proof.finding import Fault, Finding
 from closedform.derivation.spectrum_steps import Eigenvalue, eigenvalues_of
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Step, Symbol
+from closedform.notation.expression import Name
 from closedform.response.names import constant_values
 from closedform.response.response import Response
 
@@ -57,6 +59,11 @@ class Ground:
         """The constants of the response and the imaginary unit."""
         values = constant_values(self.response.closed_forms.constants)
         return {IMAGINARY_UNIT.text: acb(0, 1)} | {n: acb(v) for n, v in values.items()}
+
+    @cached_property
+    def root(self) -> Name:
+        """The variable of the characteristic polynomial."""
+        return root_of(self.response)
 
     @cached_property
     def matrix(self) -> acb_mat:

@@ -102,7 +102,7 @@ def constant_rows(ground: Ground, step: Step) -> Iterator[Finding]:
         for other in balls:
             if not other.overlaps(met[0]):
                 slope = slope * (met[0] - other)
-        value = ball_at(numerator, {"lambda": met[0]}) / slope
+        value = ball_at(numerator, {ground.root.text: met[0]}) / slope
         is_real = met[0].imag == 0
         parts = (value, None) if is_real else (acb(2 * value.real), acb(-2 * value.imag))
         for constant, part in zip(row["constants"], parts, strict=True):

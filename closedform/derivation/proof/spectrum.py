@@ -107,23 +107,27 @@ def output_definition(ground: Ground, statement: Statement) -> Iterator[Finding]
 def polynomial_statement(ground: Ground, statement: Statement) -> Iterator[Finding]:
     """p(lambda) = det(lambda I - A), expanded and factored, at more points than its degree."""
     says = statement.says
-    n = ground.matrix.nrows()
+    n, root = ground.matrix.nrows(), ground.root
+    named = (
+        Symbol("characteristic polynomial", argument=root),
+        Symbol("determinant", argument=root, letter="A"),
+    )
     symbols, formulas = statement.sides[:2], [formula_in(side) for side in statement.sides[2:]]
     yield from whether(
-        symbols == (Symbol("characteristic polynomial"), Symbol("determinant", letter="A")),
+        symbols == named,
         says,
         "the letters are others",
     )
     for k in _beyond_eigenvalues(ground, n + 2):
         point = SurdSum.rational(k)
-        values = [exact_at(formula, {"lambda": point}) for formula in formulas]
+        values = [exact_at(formula, {root.text: point}) for formula in formulas]
         yield from whether(
             all(value == values[0] for value in values),
             says,
-            f"its two forms differ at lambda = {k}",
+            f"its two forms differ at {root.text} = {k}",
         )
         determinant = (unit(n) * acb(ball_of(point)) - ground.matrix).det()
-        yield Comparison(f"{says} at lambda = {k}", acb(ball_of(values[0])), determinant)
+        yield Comparison(f"{says} at {root.text} = {k}", acb(ball_of(values[0])), determinant)
 
 
 def _beyond_eigenvalues(ground: Ground, count: int) -> range:
@@ -144,7 +148,7 @@ def eigenvalue_statement(ground: Ground, statement: Statement) -> Iterator[Findi
         name = symbol.text
         yield Comparison(f"{name} as defined", ball_at(formula_in(value), {}), ground.names[name])
         return
-    numbers = _numbers(symbol)
+    numbers = _numbers(ground, symbol)
     place = f"eigenvalue {','.join(map(str, numbers))}"
     if isinstance(value, Symbol):
         rate, turn = (ball_at(formula_in(part), ground.names) for part in value.parts)
@@ -166,8 +170,8 @@ def _is_eigenvalue(ground: Ground, place: str, number: int, ball: acb) -> Iterat
         yield Comparison(place, ball, expected)
 
 
-def _numbers(side: Side) -> tuple[int, ...]:
-    if not isinstance(side, Symbol) or side.letter != "lambda" or len(side.indices) != 1:
+def _numbers(ground: Ground, side: Side) -> tuple[int, ...]:
+    if not isinstance(side, Symbol) or side.letter != ground.root.text or len(side.indices) != 1:
         raise TypeError(f"{side} is no eigenvalue")
     return tuple(map(int, side.indices[0].split(",")))
 
@@ -178,7 +182,7 @@ def eigenvalue_rows(ground: Ground, step: Step) -> Iterator[Finding]:
     rows = rows_of(step)
     seen: list[tuple[int, ...]] = []
     for row in rows:
-        numbers = _numbers(row["eigenvalue"])
+        numbers = _numbers(ground, row["eigenvalue"])
         seen.append(numbers)
         place = f"table of eigenvalues, number {','.join(map(str, numbers))}"
         eigenvalue = ground.numbered.get(numbers)
@@ -241,7 +245,7 @@ def polynomial_of_roots(ground: Ground, step: Step, statement: Statement) -> Ite
     factor = _factor_named(ground, step)
     for k in range(factor.degree + 2):
         point = acb(k) - factor.degree // 2
-        names = {"lambda": point}
+        names = {ground.root.text: point}
         if squares:
             names = {"mu": ball_at(squares[0], names)}
         yield Comparison(
@@ -250,7 +254,7 @@ def polynomial_of_roots(ground: Ground, step: Step, statement: Statement) -> Ite
 
 
 def _factor_named(ground: Ground, step: Step) -> Factor:
-    return ground.numbered[_numbers(rows_of(step)[0]["eigenvalue"])].factor
+    return ground.numbered[_numbers(ground, rows_of(step)[0]["eigenvalue"])].factor
 
 
 def root_rows(ground: Ground, step: Step) -> Iterator[Finding]:
@@ -260,7 +264,7 @@ def root_rows(ground: Ground, step: Step) -> Iterator[Finding]:
     boxes: dict[int, list[acb]] = {}
     for row in rows:
         name, part = row["name"].text, row["part"]
-        number = _numbers(row["eigenvalue"])[0]
+        number = _numbers(ground, row["eigenvalue"])[0]
         root = ground.eigenvalues[number]
         value = acb(root.real if part == "real" else root.imag)
         place = f"{part} part {name}"

@@ -14,6 +14,7 @@ from collections.abc import Callable, Iterator, Sequence
 
 from flint import ctx
 
+from closedform.derivation.formulas import root_of
 from closedform.derivation.proof import forms, resolvent, results, spectrum
 from closedform.derivation.proof.evaluation import expressions_in
 from closedform.derivation.proof.finding import (
@@ -88,12 +89,11 @@ _FACTS: _Facts = {
 _OTHERWISE: _Facts = {"values": results.values_by_formula}
 """A second way to prove what a table holds, for entries that the first leaves open."""
 
-_VARIABLES = {
-    "characteristic_polynomial": {"lambda"},
-    "named_roots": {"lambda", "mu"},
-    "resolvent": {"s"},
-    "abbreviations": {"lambda"},
-}
+_WITH_ROOT = ("characteristic_polynomial", "named_roots", "abbreviations")
+"""Steps that use the variable of the characteristic polynomial."""
+
+_VARIABLES = {"named_roots": {"mu"}, "resolvent": {"s"}}
+"""Further variables by the kind of step."""
 
 
 def prove_statements(response: Response, steps: Sequence[Step], digits: int) -> Check:
@@ -208,6 +208,8 @@ def _undefined(response: Response, steps: Sequence[Step]) -> Iterator[Fault]:
     known = {model.time, IMAGINARY_UNIT.text, *_defined(steps)}
     for step in steps:
         allowed = known | _VARIABLES.get(step.kind, set())
+        if step.kind in _WITH_ROOT:
+            allowed.add(root_of(response).text)
         if step.kind == "model":
             allowed = {*model.states, *(o.name for o in model.outputs), model.time}
         for statement in step.statements:

@@ -198,6 +198,7 @@ class ForgottenParameterError(ModelError):
             f"{quoted(self.equation)} {are} declared nowhere, so that it would be a product of "
             f"unknowns; {listed_names(self.names)} {have} no primes: declare {them} in "
             f'[parameters], as {self.names[0]} = "positive"'
+            f"{'; there is no imaginary unit here, formulas are real' if 'i' in self.names else ''}"
         )
 
 

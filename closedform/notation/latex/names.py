@@ -28,6 +28,7 @@ __all__ = [
     "derivative_box",
     "derivatives_of",
     "dot_ending",
+    "imaginary_unit",
     "is_long",
     "is_raised",
     "is_time",
@@ -49,6 +50,7 @@ OTHER_SPELLINGS = {"lamda": "lambda", "omicron": "o"}
 """`lamda` is the spelling Python users need for `lambda`; an omicron looks like an o."""
 
 IMAGINARY = "@i"
+"""The name of the imaginary unit; `imaginary_unit` says which letter is printed."""
 THE_NUMBER = {"pi": r"\uppi"}
 """Names that stand for numbers, upright; the preamble of a write-up defines their commands."""
 UP_TO = (
@@ -74,6 +76,7 @@ DOTS = (r"\dot", r"\ddot", r"\dddot")
 """Accents of the first derivatives with respect to the time; later ones have a number."""
 TIMES = frozenset({"t", "tau", "time"})
 _primes: ContextVar[bool] = ContextVar("primes", default=False)
+_unit: ContextVar[str] = ContextVar("unit", default="i")
 
 
 def _width(word: str) -> float:
@@ -181,6 +184,16 @@ def derivatives_of(variable: str) -> Iterator[None]:
         _primes.reset(before)
 
 
+@contextmanager
+def imaginary_unit(letter: str) -> Iterator[None]:
+    """Set the imaginary unit as this letter, upright: i, or j beside a current i."""
+    before = _unit.set(letter)
+    try:
+        yield
+    finally:
+        _unit.reset(before)
+
+
 def derivative_box(body: Box, indices: tuple[str, ...], order: int, style: Style) -> Box:
     """Return a letter with dots or primes, or with its order in brackets, and with indices."""
     if 0 < order <= len(DOTS) and not _primes.get():
@@ -213,7 +226,7 @@ def name_box(text: str, style: Style = Style.DISPLAY, extra: tuple[str, ...] = (
     A text that is no name (it cannot come from the reader) is set upright as it stands.
     """
     if text == IMAGINARY:
-        return plain(r"\mathrm{i}", 0.3, style)
+        return plain(rf"\mathrm{{{_unit.get()}}}", 0.3, style)
     if text in THE_NUMBER:
         return subscripted(plain(THE_NUMBER[text], 0.6, style), extra, style)
     parts = _parts(text)

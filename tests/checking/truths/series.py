@@ -7,6 +7,7 @@ from collections.abc import Mapping, Sequence
 from flint import acb, arb, arb_mat, arb_series, ctx, fmpq
 
 from closedform.checking.truth import Truth
+from closedform.derivation.formulas import root_variable
 from closedform.notation.written.tree import (
     Apply,
     Constant,
@@ -186,7 +187,8 @@ def check_eigenvalues(truth: Truth) -> None:
                 for e in truth.eigenvalues:
                     root = acb(*e.ball()) if e.value is None else number(e.value, names)
                     product = product * (z - root) ** e.algebraic
-                whole = series(truth.characteristic, {**names, "lambda": constant(z)})[0]
+                root = root_variable(truth.parameters).text
+                whole = series(truth.characteristic, {**names, root: constant(z)})[0]
                 assert same(product.real, whole)
                 assert same(product.imag, arb(0))
                 minor = _determinant(truth, names, z)

@@ -28,11 +28,11 @@ def oscillator(**values: object) -> tuple[Truth, ...]:
     )
 
 
-def chain() -> Truth:
-    rates = {name: {"assume": "positive"} for name in ("lamda", "mu")}
+def chain(rate: str = "lamda") -> Truth:
+    rates = {name: {"assume": "positive"} for name in (rate, "mu")}
     (truth,) = truths_of(
         system(
-            [["-lamda", "mu"], ["lamda", "-mu"]],
+            [[f"-{rate}", "mu"], [rate, "-mu"]],
             initial=[1, 0],
             states=["up", "down"],
             parameters=rates,
@@ -129,6 +129,12 @@ def test_no_values_are_put_in_where_there_are_none() -> None:
     assert substituted(truth, frozenset()) is truth
     with pytest.raises(NoValueError, match="no value for m in the case"):
         substituted(truth, frozenset({"m"}))
+
+
+def test_a_rate_lambda_is_not_the_unknown_of_the_polynomial() -> None:
+    truth = chain("lambda")
+    check(truth)
+    assert plain_written(truth.characteristic) == "s^2 + (lambda + mu)*s"
 
 
 def test_the_chain_tends_to_its_stationary_state() -> None:

@@ -8,7 +8,7 @@ from closedform.derivation.driven.build import derive_driven
 from closedform.derivation.driven.proof.statements import PROVERS
 from closedform.derivation.driven.writing import Writing
 from closedform.derivation.parametric.proof.ground import said_in
-from closedform.derivation.step import Step, Symbol
+from closedform.derivation.step import LAMBDA, Step, Symbol
 from closedform.verification.record import VerificationRecord
 from tests.derivation.driven.models import MODELS, derived, proved, solved
 from tests.verification.driven.made import stated
@@ -101,7 +101,7 @@ def test_resonance_is_named_in_the_case_in_which_it_is() -> None:
 
 def test_the_stacked_matrix_has_a_hat_and_the_models_own_has_none() -> None:
     polynomial = step_of("frame", "characteristic_polynomial").statements[0]
-    assert polynomial.sides[1] == Symbol("determinant", letter="A_hat")
+    assert polynomial.sides[1] == Symbol("determinant", argument=LAMBDA, letter="A_hat")
     own = step_of("frame", "stability").statements[0].sides[0]
     assert isinstance(own, Symbol)
     assert own.letter == "A"
