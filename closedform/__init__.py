@@ -14,6 +14,9 @@ from importlib import import_module
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
+    from closedform.checking.check import check_file
+    from closedform.checking.verdict import CheckReport
+    from closedform.document.checked_report import write_check
     from closedform.document.writeup import WriteUp, write_up
     from closedform.model.building import system
     from closedform.model.driven.model import DrivenModel
@@ -30,6 +33,7 @@ if TYPE_CHECKING:
 
 __all__ = [
     "CaseRecords",
+    "CheckReport",
     "DrivenModel",
     "DrivenResponse",
     "Model",
@@ -38,15 +42,18 @@ __all__ = [
     "Response",
     "VerificationRecord",
     "WriteUp",
+    "check_file",
     "load",
     "respond",
     "system",
     "verify",
+    "write_check",
     "write_up",
 ]
 
 _HOMES = {
     "CaseRecords": "closedform.verification.parametric.record",
+    "CheckReport": "closedform.checking.verdict",
     "DrivenModel": "closedform.model.driven.model",
     "DrivenResponse": "closedform.response.driven.response",
     "Model": "closedform.model.model",
@@ -55,10 +62,12 @@ _HOMES = {
     "Response": "closedform.response.response",
     "VerificationRecord": "closedform.verification.record",
     "WriteUp": "closedform.document.writeup",
+    "check_file": "closedform.checking.check",
     "load": "closedform.model.reading",
     "respond": "closedform.response.solving",
     "system": "closedform.model.building",
     "verify": "closedform.verification.proving",
+    "write_check": "closedform.document.checked_report",
     "write_up": "closedform.document.writeup",
 }
 
