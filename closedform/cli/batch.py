@@ -107,6 +107,7 @@ def _write_one(model: str, wishes: Wishes, screen: Screen, progress: Progress) -
             depth=wishes.depth,
             digits=wishes.digits,
             record=wishes.record,
+            source=model,
         )
     except ClosedformError as error:
         screen.error(error)

@@ -11,8 +11,10 @@ from closedform.derivation.parametric.build import derive_cases
 from closedform.derivation.step import Derivation
 from closedform.document.engine import compile_pdf
 from closedform.document.files import write_whole
+from closedform.document.origin import Origin, origin_line, path_between
+from closedform.document.reading.back import read_back
 from closedform.document.record import DIGITS, record_text
-from closedform.document.render import check_options, render
+from closedform.document.render import check_options, rendered
 from closedform.document.templating import check_template
 from closedform.model.driven.model import DrivenModel
 from closedform.model.model import Model
@@ -30,7 +32,7 @@ from closedform.verification.record import VerificationRecord
 from closedform.verification.refusal import require_proved
 from closedform.verification.verify import verify
 
-__all__ = ["WriteUp", "write_up"]
+__all__ = ["Made", "WriteUp", "made_from", "write_up"]
 
 
 @dataclass(frozen=True)
@@ -42,7 +44,7 @@ class WriteUp:
     files: tuple[Path, ...]
 
 
-def write_up(
+def write_up(  # noqa: PLR0913 - one parameter for each option
     model: Model | ParametricModel | DrivenModel,
     *,
     into: str | Path = "out",
@@ -50,27 +52,34 @@ def write_up(
     depth: str = "working",
     digits: int = 6,
     record: bool = True,
+    source: str | Path | None = None,
 ) -> WriteUp:
     """Solve a model, prove the result, and write NAME.tex and NAME.record.json.
 
     `into` is the folder, made if it is not there; `depth` is summary, working or full;
-    `digits` are the significant digits of the tables.
+    `digits` are the significant digits of the tables.  `source` is the file of the model as
+    the user named it, which the top of the document tells; left out, that is NAME.toml.
+    The document is read back before it is written: what it displays is what was proved.
 
     Raises:  UnknownDepthError, UnusableDigitsError for options out of their range;
              TemplateError if there is no such template;
              ResponseRefutedError if any identity is refuted, StatementRefutedError if a
              statement of the derivation is, UnprovedError if either is left open (then
              nothing is written);
+             DocumentRefutedError if the text does not print what was proved;
              RootsUnknownError, ValuesNotCoveredError for a model with parameters that is
              not solved for all or some values of them;
              CannotWriteError if a file cannot be written.
     """
     check_options(depth=depth, digits=digits)
     check_template(template)
-    made = _made(model, digits)
-    text = render(made.derivation, template=template, depth=depth)
+    made = made_from(model, digits)
+    shown = rendered(made.derivation, template=template, depth=depth)
+    read_back(shown.text, shown.printed, shown.time, template=template)
     folder = Path(into)
-    files = [write_whole(folder / f"{model.name}.tex", text)]
+    named = f"{model.name}.toml" if source is None else path_between(source, folder)
+    top = origin_line(Origin(named, depth, digits))
+    files = [write_whole(folder / f"{model.name}.tex", top + shown.text)]
     if record:
         path = folder / f"{model.name}.record.json"
         content = record_text(made.response, made.verification, made.numbers)
@@ -79,7 +88,7 @@ def write_up(
 
 
 @dataclass(frozen=True)
-class _Made:
+class Made:
     """A response that holds, its derivation, and what the record tells in numbers."""
 
     response: Response | ParametricResponse | DrivenResponse
@@ -88,7 +97,11 @@ class _Made:
     numbers: tuple[NumbersAt, ...] | tuple[DrivenNumbersAt, ...] = ()
 
 
-def _made(model: Model | ParametricModel | DrivenModel, digits: int) -> _Made:
+def made_from(model: Model | ParametricModel | DrivenModel, digits: int) -> Made:
+    """Solve a model, prove the result, and derive it, with tables of `digits` digits.
+
+    Raises:  as `write_up`, but for the errors of documents and files.
+    """
     match model:
         case DrivenModel():
             return _driven(model, digits)
@@ -98,15 +111,15 @@ def _made(model: Model | ParametricModel | DrivenModel, digits: int) -> _Made:
             return _in_numbers(model, digits)
 
 
-def _in_numbers(model: Model, digits: int) -> _Made:
+def _in_numbers(model: Model, digits: int) -> Made:
     response = respond(model)
     verification = verify(response)
     require_proved(model.name, verification)
     derivation = derive(response, verification, digits=digits)
-    return _Made(response, VerificationRecord(derivation.checks), derivation)
+    return Made(response, VerificationRecord(derivation.checks), derivation)
 
 
-def _in_cases(model: ParametricModel, digits: int) -> _Made:
+def _in_cases(model: ParametricModel, digits: int) -> Made:
     """The values of the model are put in, too, and held against a numeric solution."""
     response = respond_in_cases(model)
     records = verify_cases(response)
@@ -117,10 +130,10 @@ def _in_cases(model: ParametricModel, digits: int) -> _Made:
     require_proved(model.name, records)
     derivation = derive_cases(response, records, digits=digits, numbers=numbers)
     records = CaseRecords(VerificationRecord(derivation.checks), records.cases)
-    return _Made(response, records, derivation, numbers_of(response, digits=DIGITS))
+    return Made(response, records, derivation, numbers_of(response, digits=DIGITS))
 
 
-def _driven(model: DrivenModel, digits: int) -> _Made:
+def _driven(model: DrivenModel, digits: int) -> Made:
     response = respond_driven(model)
     found = verify_driven(response)
     numbers = driven_numbers_of(response, digits=digits)
@@ -129,7 +142,7 @@ def _driven(model: DrivenModel, digits: int) -> _Made:
     proved = VerificationRecord(derivation.checks)
     verification = CaseRecords(proved, found.cases) if isinstance(found, CaseRecords) else proved
     exact = driven_numbers_of(response, digits=DIGITS)
-    return _Made(response, verification, derivation, exact)
+    return Made(response, verification, derivation, exact)
 
 
 def write_pdf(write_up: WriteUp) -> Path:

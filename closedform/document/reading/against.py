@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 from difflib import SequenceMatcher
+from itertools import groupby
 
 from closedform.checking.claim import SourceLine
 from closedform.checking.verdict import LineVerdict, Word
@@ -22,7 +23,7 @@ from closedform.notation.written.tree import Statement
 
 __all__ = ["verdicts"]
 
-MISSING = "The write-up of the model has a statement here that the document has not: {}."
+MISSING = "The write-up of the model has a display here that the document has not: {}."
 STRANGE = "The write-up of the model has no such statement, so that it was not judged."
 OTHERWISE = "The write-up of the model says otherwise here."
 WRITTEN_RELATIONS = {"<=": "≤", ">=": "≥", "!=": "≠", "~~": "≈"}
@@ -32,10 +33,14 @@ LEAST_LIKENESS = 0.4
 
 @dataclass(frozen=True)
 class _Item:
-    """A statement as it stands in a document; `chain` is None if it is not read, and why."""
+    """A statement as it stands in a document; `chain` is None if it is not read, and why.
+
+    `display` is the number of the display in the rendering, for those that are to be there.
+    """
 
     texts: SideTexts
     place: int
+    display: int = 0
     says: str = ""
     chain: Chain | None = None
     unread: str = ""
@@ -73,12 +78,13 @@ def verdicts(
 
 def _items_of(fresh: str, printed: Printed, time: str) -> Iterator[_Item]:
     """Return the statements of a rendering, each with what it says."""
-    for display, shown in zip(displays_in(fresh), printed.displays, strict=True):
+    pairs = zip(displays_in(fresh), printed.displays, strict=True)
+    for number, (display, shown) in enumerate(pairs):
         reader = reader_for(shown.statements, time)
         texts = statements_of(display.body, aligned=display.aligned)
         for place, each in enumerate(texts):
             says = shown.statements[min(place, len(shown.statements) - 1)].says
-            yield replace(_read(each, 0, reader), says=says)
+            yield replace(_read(each, 0, reader), says=says, display=number)
 
 
 def _items_in(text: str, wanted: Sequence[_Item], printed: Printed, time: str) -> Iterator[_Item]:
@@ -125,11 +131,19 @@ def _compared(wanted: Sequence[_Item], found: Sequence[_Item], end: int) -> _Jud
                 _judged(found[k], edited[k]) if k in edited else (found[k], _verdict("holds"))
             )
         at = found[stop].place if stop < len(found) else end
-        left = [item for item in missing if not any(item is p for p in partners)]
-        results += [
-            (replace(item, place=at), _verdict("fails", MISSING.format(item.says))) for item in left
-        ]
+        left = [item for item in missing if not any(item is own for own in partners)]
+        results += _missing(left, at)
     return results
+
+
+def _missing(items: Sequence[_Item], at: int) -> Iterator[tuple[_Item, LineVerdict]]:
+    """Return one verdict for each display of which statements are missing."""
+    for _, group in groupby(items, key=lambda item: item.display):
+        first, *others = group
+        says = ", ".join(dict.fromkeys(item.says for item in (first, *others)))
+        verdict = _verdict("fails", MISSING.format(says))
+        right = first.read[0].members[-1] if first.read and not others else None
+        yield replace(first, place=at, says=says, read=()), replace(verdict, right=right)
 
 
 def _partners(missing: Sequence[_Item], strange: Sequence[_Item]) -> list[_Item | None]:
@@ -168,7 +182,7 @@ def _tables(text: str, fresh: str) -> _Judged:
     wanted, found = tables_in(fresh), tables_in(text)
     results: _Judged = []
     for place, table in enumerate(found):
-        item = _Item(SideTexts(("",), ()), table.start, "table of values")
+        item = _Item(SideTexts(("",), ()), table.start, says="table of values")
         if place >= len(wanted):
             results.append((item, _verdict("not read", STRANGE)))
             continue
@@ -176,13 +190,14 @@ def _tables(text: str, fresh: str) -> _Judged:
         for number, (row, own) in enumerate(zip(table.rows, wanted[place].rows, strict=False)):
             if cells_of(row) != cells_of(own):
                 verdict = _verdict("fails", f"Row {number} of the values is otherwise.")
-                item = replace(item, texts=SideTexts((" & ".join(row),), ()))
+                texts = SideTexts((" & ".join(row),), ())
+                item = replace(item, texts=texts, place=table.starts[number])
                 break
         else:
             if len(table.rows) != len(wanted[place].rows):
                 verdict = _verdict("fails", "Rows of the values are missing, or too many.")
         results.append((item, verdict))
     for _ in wanted[len(found) :]:
-        item = _Item(SideTexts(("",), ()), len(text), "table of values")
+        item = _Item(SideTexts(("",), ()), len(text), says="table of values")
         results.append((item, _verdict("fails", MISSING.format(item.says))))
     return results

@@ -8,7 +8,7 @@ and cells are read, too, wherever they stand.  What a sentence says of them is n
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from pathlib import Path
 
 from closedform.derivation.step import Side, Statement
@@ -59,6 +59,9 @@ class _Back:
     def __init__(self, text: str, printed: Printed, time: str, template: str | Path) -> None:
         self.text, self.printed, self.template = text, printed, template
         self.expected = Expected(time)
+        self.places: dict[str, int] = {}
+        for body, start in formulas_in(text):
+            self.places.setdefault(body.removeprefix(r"\displaystyle "), start)
 
     def all(self) -> None:
         self.displays()
@@ -69,6 +72,9 @@ class _Back:
     def refuse(self, place: int, shown: str, latex: str, what: str) -> None:
         line = line_at(self.text, place)
         raise DocumentRefutedError(str(self.template), line, shown, latex, what)
+
+    def place_of(self, latex: str) -> int:
+        return self.places.get(latex.strip("$"), 0)
 
     def displays(self) -> None:
         displays, wanted = displays_in(self.text), self.printed.displays
@@ -100,27 +106,23 @@ class _Back:
             self.refuse(len(self.text), "table", "", "a table is missing")
 
     def formulas(self) -> None:
-        places: dict[str, int] = {}
-        for body, start in formulas_in(self.text):
-            places.setdefault(body.removeprefix(r"\displaystyle "), start)
-        self.accounts(places)
+        self.accounts()
         for latex, item in self.printed.formulas.items():
             reader = reader_for([item], self.expected.time)
             wrong = self.formula_unlike(latex, self.expected.chain(item), reader)
             if wrong is not None:
-                place = places.get(latex.strip("$"), 0)
-                self.refuse(place, "in a sentence", wrong.latex, wrong.what)
+                self.refuse(self.place_of(latex), "in a sentence", wrong.latex, wrong.what)
 
-    def accounts(self, places: Mapping[str, int]) -> None:
+    def accounts(self) -> None:
         """Refuse a formula that was neither made from an object nor stands in a template."""
         known = {*self.printed.formulas, *self.printed.decimals, *self.printed.words}
         made = {body for each in known for body, _ in formulas_in(each)}
-        strange = [body for body in places if body not in made]
+        strange = [body for body in self.places if body not in made]
         if strange:
             literal = formulas_of_templates(self.template)
             for body in strange:
                 if body not in literal:
-                    self.refuse(places[body], "in a sentence", body, "nothing accounts for it")
+                    self.refuse(self.places[body], "in a sentence", body, "nothing accounts for it")
 
     def formula_unlike(self, latex: str, chain: Chain, reader: SideReader) -> Difference | None:
         try:
@@ -133,7 +135,14 @@ class _Back:
         for latex, text in self.printed.decimals.items():
             value = decimal_value(text)
             if value is None:
+                if formulas_in(latex):
+                    self.refuse(
+                        self.place_of(latex),
+                        "decimal",
+                        latex,
+                        f"it stands for {text!r}, which is no decimal",
+                    )
                 continue  # words
             wrong = self.formula_unlike(latex, Chain((value,)), reader)
             if wrong is not None:
-                self.refuse(0, "decimal", wrong.latex, wrong.what)
+                self.refuse(self.place_of(latex), "decimal", wrong.latex, wrong.what)

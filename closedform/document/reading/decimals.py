@@ -20,7 +20,8 @@ DECIMAL = re.compile(
     r"(?P<sign>[-+\u2212]?)(?P<digits>[0-9]+(\.[0-9]+)?)([eE](?P<power>[-+]?[0-9]+))?"
 )
 COMPLEX = re.compile(
-    r"(?P<real>.*?[0-9])?\s*(?P<sign>[-+\u2212\u00b1]?)\s*(?P<size>[0-9.]+([eE][-+]?[0-9]+)?)\s*i"
+    r"(?:(?P<real>.*?[0-9])\s*(?P<sign>[-+\u2212\u00b1])|(?P<lone>[-+\u2212\u00b1]?))"
+    r"\s*(?P<size>[0-9.]+([eE][-+]?[0-9]+)?)\s*i"
 )
 MINUS = frozenset("-\u2212")
 WHOLE_CELL = re.compile(r"\\multicolumn\{2\}\{[lcr]\}\{(?P<inside>.*)\}", re.DOTALL)
@@ -42,9 +43,10 @@ def decimal_value(text: str) -> Value | None:
     if size is None or real is None:
         return None
     imaginary = times((size, normal(IMAGINARY)))
-    if match["sign"] == "\u00b1":
+    sign = match["sign"] or match["lone"]
+    if sign == "\u00b1":
         return both_signs(real, imaginary)
-    return plus((real, times((number(-1 if match["sign"] in MINUS else 1), imaginary))))
+    return plus((real, times((number(-1 if sign in MINUS else 1), imaginary))))
 
 
 def _real(match: re.Match[str]) -> Value:

@@ -21,6 +21,7 @@ TABLE = re.compile(
     re.DOTALL,
 )
 RULES = re.compile(r"\\(?:toprule|midrule|bottomrule|endhead|endlastfoot|endfoot|endfirsthead)\b")
+LINE = re.compile(r"(?P<cells>(?:[^\\]|\\[^\\])+)(?:\\\\\*?)?")
 ALIGNED = frozenset({"align", "flalign", "alignat", "eqnarray", "multline"})
 BODY_BEGINS = r"\begin{document}"
 
@@ -38,9 +39,13 @@ class FoundDisplay:
 
 @dataclass(frozen=True, slots=True)
 class FoundTable:
-    """A table whose cells are cut at the decimal point: its rows, with two cells for each."""
+    """A table whose cells are cut at the decimal point: its rows, with two cells for each.
+
+    `starts` are the places of the rows in the text.
+    """
 
     rows: tuple[tuple[str, ...], ...]
+    starts: tuple[int, ...]
     start: int
 
 
@@ -75,9 +80,15 @@ def tables_in(text: str) -> list[FoundTable]:
     """Return the tables of decimals after the preamble; the first row is the head."""
     found: list[FoundTable] = []
     for match in TABLE.finditer(_body(text)):
-        lines = re.split(r"\\\\\*?", RULES.sub("", match["body"]))
-        rows = [tuple(cell.strip() for cell in line.split("&")) for line in lines if line.strip()]
-        found.append(FoundTable(tuple(rows), match.start()))
+        rows: list[tuple[str, ...]] = []
+        starts: list[int] = []
+        for line in LINE.finditer(RULES.sub(_blank, match["body"])):
+            cells = line["cells"]
+            if cells.strip():
+                rows.append(tuple(cell.strip() for cell in cells.split("&")))
+                lead = len(cells) - len(cells.lstrip())
+                starts.append(match.start("body") + line.start() + lead)
+        found.append(FoundTable(tuple(rows), tuple(starts), match.start()))
     return found
 
 

@@ -8,7 +8,7 @@ from closedform.document.reading.expected import entry, functions_of, one_sided,
 from closedform.document.reading.normal import BOLD, UPRIGHT_I, Value, normal
 from closedform.errors import ClosedformError
 from closedform.notation.written.reader import read_latex
-from closedform.notation.written.tree import Declared, Symbol, Written, changed
+from closedform.notation.written.tree import Declared, Jet, Symbol, Written, changed
 
 __all__ = ["SideReader", "UnreadSideError"]
 
@@ -100,6 +100,9 @@ def _called(text: str) -> str:
 
 
 def _bold_again(node: Written) -> Written | None:
-    if isinstance(node, Symbol) and node.name.startswith(BOLD):
-        return Symbol(node.name.removeprefix(BOLD), bold=True)
+    match node:
+        case Symbol(name) if name.startswith(BOLD):
+            return Symbol(name.removeprefix(BOLD), bold=True)
+        case Jet(name, order, at) if name.startswith(BOLD):
+            return Jet(name.removeprefix(BOLD), order, at)
     return None
