@@ -10,6 +10,7 @@ from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips.aims import aimed
+from closedform.checking.slips.differentiating import derivatives, forced_signs
 from closedform.checking.slips.edits import (
     angles,
     chains,
@@ -20,18 +21,22 @@ from closedform.checking.slips.edits import (
 )
 from closedform.checking.slips.factors import constants, factors, left_out, normalised
 from closedform.checking.slips.lost_factors import inverted, missing_times, missing_waves
-from closedform.checking.slips.matrix_slips import inverses, rearranged, swapped_products
-from closedform.checking.slips.motion import derivatives, forced_signs, parts
+from closedform.checking.slips.matrix_slips import (
+    inverses,
+    rearranged,
+    rearranged_first,
+    swapped_products,
+)
+from closedform.checking.slips.motion import parts
 from closedform.checking.slips.narrowing import narrowed
-from closedform.checking.slips.numbers import one_number
+from closedform.checking.slips.numbers import one_number, same_number
 from closedform.checking.slips.quantities import conversions, digits, rounded
 from closedform.checking.slips.residual import residual_text
+from closedform.checking.slips.root_lists import listed, root_numbers
 from closedform.checking.slips.shifts import delays, other_names
 from closedform.checking.slips.spectrum_slips import (
     canonical,
     eigenvectors,
-    listed,
-    root_numbers,
     transformations,
 )
 from closedform.checking.slips.trial import Candidate, Trial
@@ -49,6 +54,7 @@ OF_WHOLE: tuple[Source, ...] = (
     digits,
     normalised,
     forced_signs,
+    rearranged_first,
 )
 OF_PLACES: tuple[Source, ...] = (
     term_signs,
@@ -76,6 +82,7 @@ LAST: tuple[Source, ...] = (
     left_out,
     extra_terms,
     factors,
+    same_number,
 )
 """Where candidates come from, the most specific first; of places once more in one entry only."""
 OUTSIDE = (NotJudgedError, NotElementaryError, NoValueError, ArithmeticError)

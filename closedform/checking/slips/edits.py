@@ -6,12 +6,21 @@ from collections.abc import Callable, Iterator
 from fractions import Fraction
 
 from closedform.checking.slips import names
-from closedform.checking.slips.making import ONE, ZERO, contains, negated, number, over, times
+from closedform.checking.slips.making import (
+    ONE,
+    ZERO,
+    contains,
+    exponent_of,
+    exponential,
+    negated,
+    number,
+    over,
+    times,
+)
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed, wave_above, waves_in
 from closedform.notation.written.tree import (
-    EULER,
     PI,
     Apply,
     Array,
@@ -63,9 +72,9 @@ def _turned(trial: Trial, spot: Spot) -> Iterator[Change]:
             yield _term_sign(trial, spot, term), part_text(term), turned
     if isinstance(spot.outer, Array) and spot.path != trial.start and node != ZERO:
         yield _entry_sign(trial, spot), "", negated(node)
-    if isinstance(node, Power) and node.base == EULER:
-        new = Power(EULER, negated(node.exponent))
-        yield names.SIGN_EXPONENT, "the exponential", new
+    exponent = exponent_of(node)
+    if exponent is not None:
+        yield names.SIGN_EXPONENT, "the exponential", exponential(negated(exponent), node)
     if isinstance(node, Apply) and node.function in ("sin", "sinh", "tan"):
         yield _wave_sign(trial, node.function), part_text(node), Negation(node)
 
@@ -135,15 +144,15 @@ def sine_signs(trial: Trial) -> Iterator[Candidate]:
 
 def _exponents_turned(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with the sign of an exponent turned wherever it stands, or of all."""
-    nodes = [n for n in walk(trial.tree) if isinstance(n, Power) and n.base == EULER]
-    found = [node.exponent for node in nodes]
+    found = [x for n in walk(trial.tree) if (x := exponent_of(n)) is not None]
     several = [one for one in dict.fromkeys(found) if found.count(one) > 1]
     for chosen in [{one} for one in several] + ([set(found)] if len(set(found)) > 1 else []):
 
         def change(node: Written, chosen: set[Written] = chosen) -> Written | None:
-            if isinstance(node, Power) and node.base == EULER and node.exponent in chosen:
-                return Power(EULER, negated(node.exponent))
-            return None
+            exponent = exponent_of(node)
+            if exponent not in chosen or exponent is None:
+                return None
+            return exponential(negated(exponent), node)
 
         where = "every exponential" if len(chosen) > 1 else "the same exponential everywhere"
         yield Candidate(names.SIGN_EXPONENT, where, changed(trial.tree, change))

@@ -12,10 +12,12 @@ from closedform.algebra.elementary import Element
 from closedform.checking.ground import SPECTRAL
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.slips import names
-from closedform.checking.slips.making import negated, terms_of, times
+from closedform.checking.slips.making import ONE, negated, over, terms_of, times
 from closedform.checking.slips.measuring import real, size
+from closedform.checking.slips.narrowing import part_at
 from closedform.checking.slips.numbers import one_number
 from closedform.checking.slips.solving import simplest
+from closedform.checking.slips.spots import put
 from closedform.checking.slips.trial import BITS, Candidate, Trial
 from closedform.checking.slips.wording import part_text
 from closedform.checking.written_back import written_back
@@ -72,7 +74,7 @@ def left_out(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with one of the terms of the true one added."""
     true = trial.true
     polynomial = trial.claim.says == "characteristic polynomial"
-    if not isinstance(true, Element) or trial.entry is not None:
+    if not isinstance(true, Element):
         return
     if true.is_constant and not polynomial:
         return
@@ -81,7 +83,15 @@ def left_out(trial: Trial) -> Iterator[Candidate]:
     terms = terms_of(written_back(true, {SPECTRAL: variable}))
     for term in terms if len(terms) > 1 else ():
         where = part_text(term)
-        yield Candidate(names.TERM_LEFT_OUT, where, _added(trial.tree, term))
+        where += f" of entry {trial.entry}" if trial.entry else ""
+        yield Candidate(names.TERM_LEFT_OUT, where, _with_term(trial, term))
+
+
+def _with_term(trial: Trial, term: Written) -> Written:
+    """Return the member, or its wrong entry, with a term more, whatever factor is in front."""
+    front = put(trial.tree, trial.start, ONE)
+    own = part_at(trial.tree, trial.start)
+    return put(trial.tree, trial.start, _added(own, term if front == ONE else over(term, front)))
 
 
 def constants(trial: Trial) -> Iterator[Candidate]:

@@ -5,8 +5,11 @@ from __future__ import annotations
 from fractions import Fraction
 
 from closedform.notation.written.tree import (
+    EULER,
+    Apply,
     Literal,
     Negation,
+    Power,
     Product,
     Quotient,
     Sum,
@@ -76,6 +79,21 @@ def contains(tree: Written, part: Written) -> bool:
 def is_number(tree: Written) -> bool:
     """Whether a formula has no names in it."""
     return not any(isinstance(node, Symbol) for node in walk(tree))
+
+
+def exponent_of(tree: Written) -> Written | None:
+    """Return the exponent of an exponential, in either notation; None for anything else."""
+    match tree:
+        case Power(base, exponent) if base == EULER:
+            return exponent
+        case Apply("exp", (exponent,)):
+            return exponent
+    return None
+
+
+def exponential(exponent: Written, like: Written) -> Written:
+    """Return an exponential in the notation of another one."""
+    return Apply("exp", (exponent,)) if isinstance(like, Apply) else Power(EULER, exponent)
 
 
 def terms_of(tree: Written) -> tuple[Written, ...]:

@@ -100,6 +100,12 @@ def _adjugates(trial: Trial, spot: Spot) -> Iterator[Candidate]:
         yield Candidate(names.ADJUGATE_DIAGONAL, "the diagonal", turned)
 
 
+def rearranged_first(trial: Trial) -> Iterator[Candidate]:
+    """Yield the same as `rearranged` where no balls sort candidates out."""
+    if not trial.points and not trial.roots:
+        yield from rearranged(trial)
+
+
 def rearranged(trial: Trial) -> Iterator[Candidate]:
     """Yield the matrix transposed, and with two rows, columns or entries exchanged."""
     for spot in _arrays(trial):

@@ -14,6 +14,7 @@ SIGN_DERIVATIVE = "sign lost in differentiating"
 SIGN_COEFFICIENT = "sign of a coefficient in the characteristic polynomial"
 SIGN_ROOT = "sign of a root in a factor of the characteristic polynomial"
 SIGN_PARTICULAR = "sign of the particular solution"
+SIGN_FREE = "sign of the free part"
 SIGN_INITIAL = "sign of an initial value"
 SIGN_ENTRY = "sign of an entry"
 SIGN_TERM = "sign of a term"
@@ -128,6 +129,7 @@ MEANINGS: dict[str, str] = {
     SIGN_COEFFICIENT: "A coefficient of the characteristic polynomial has the opposite sign.",
     SIGN_ROOT: "A factor lambda - a stands where lambda + a is right, or the other way round.",
     SIGN_PARTICULAR: "A particular solution or steady state has the opposite sign.",
+    SIGN_FREE: "The free part of a solution has the opposite sign.",
     SIGN_INITIAL: "An initial value was put in with the opposite sign.",
     SIGN_ENTRY: "An entry of a matrix or column has the opposite sign.",
     SIGN_TERM: "A term of a sum has the opposite sign.",

@@ -7,6 +7,7 @@ from fractions import Fraction
 
 from flint import arb
 
+from closedform.checking.matrices import ExactMatrix
 from closedform.checking.slips.measuring import largest, real, size
 from closedform.checking.slips.spots import Spot, Step, put
 from closedform.checking.slips.trial import EXACTLY, Effort, Point, Trial, Values
@@ -30,7 +31,8 @@ def narrowed(trial: Trial) -> Trial:
     for row, column in ((i, j), (j, i)):
         own = _entry(trial, array, row, column, points)
         if own is not None and _is_entry(own, found, at):
-            return replace(own, entry=(i, j))
+            true = trial.true.rows[i - 1][j - 1] if isinstance(trial.true, ExactMatrix) else None
+            return replace(own, entry=(i, j), true=true)
     return trial
 
 

@@ -12,7 +12,7 @@ from closedform.checking.slips.digit_slips import digit_slip
 from closedform.checking.slips.making import times
 from closedform.checking.slips.rate_places import rate_places
 from closedform.checking.slips.rates import rate_slip
-from closedform.checking.slips.solving import Place, Solved, solved
+from closedform.checking.slips.solving import Place, Solved, simplest, solved
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import BITS, Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed, wave_above
@@ -25,15 +25,19 @@ from closedform.notation.written.tree import (
     Quotient,
     Sum,
     Written,
+    changed,
     walk,
 )
 
-__all__ = ["is_bare", "one_number"]
+__all__ = ["is_bare", "one_number", "same_number"]
 
 
 def one_number(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with the right number at one place, the plainest first."""
-    if not trial.points or (is_bare(trial.tree) and trial.entry is None):
+    if not trial.points:
+        return
+    if is_bare(trial.tree) and trial.entry is None:
+        yield from _bare(trial)
         return
     found = [one for place in _places(trial) for one in solved(trial, place)]
     with ctx.workprec(BITS):
@@ -41,6 +45,25 @@ def one_number(trial: Trial) -> Iterator[Candidate]:
     for one in found:
         name, where = _told(trial, one)
         yield Candidate(name, where, one.place.tree(one.written))
+
+
+def same_number(trial: Trial) -> Iterator[Candidate]:
+    """Yield the formula with a number replaced wherever it stands."""
+    literals = [s.node for s in trial.spots() if isinstance(s.node, Literal)]
+    for literal in dict.fromkeys(literals) if trial.points else ():
+        if literals.count(literal) > 1:
+            for one in solved(trial, _everywhere(trial, literal)):
+                name, where = _told(trial, one)
+                yield Candidate(name, where, one.place.tree(one.written))
+
+
+def _bare(trial: Trial) -> Iterator[Candidate]:
+    """Yield the right number where the line is a whole number or a fraction, and wrong."""
+    with ctx.workprec(BITS):
+        right = None if trial.loose else simplest(trial.points[0].true[0])
+    if right is not None and is_bare(right) and len(trial.points[0].true) == 1:
+        where = f"{plain_written(trial.tree)} ought to be {plain_written(right)}"
+        yield Candidate(names.ONE_NUMBER, where, right)
 
 
 def is_bare(tree: Written) -> bool:
@@ -62,6 +85,13 @@ def _places(trial: Trial) -> Iterator[Place]:
     yield from rate_places(trial)
     for spot in trial.spots():
         yield from _at(trial, spot)
+
+
+def _everywhere(trial: Trial, literal: Literal) -> Place:
+    def tree(new: Written) -> Written:
+        return changed(trial.tree, lambda n: new if n == literal else None)
+
+    return Place("everywhere", "everywhere", literal.value, tree, literal)
 
 
 def _at(trial: Trial, spot: Spot) -> Iterator[Place]:

@@ -8,7 +8,7 @@ from fractions import Fraction
 from flint import acb, arb, ctx
 
 from closedform.checking.balls import NoValueError, enclose_written
-from closedform.checking.slips.making import ONE, contains, times
+from closedform.checking.slips.making import ONE, contains, exponent_of, times
 from closedform.checking.slips.solving import Place
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import BITS, Trial
@@ -30,7 +30,7 @@ from closedform.notation.written.tree import (
 
 __all__ = ["rate_places"]
 
-WAVES = ("sin", "cos", "sinh", "cosh", "exp", "tan")
+WAVES = ("sin", "cos", "sinh", "cosh", "tan")
 
 
 def rate_places(trial: Trial) -> Iterator[Place]:
@@ -46,10 +46,11 @@ def rate_places(trial: Trial) -> Iterator[Place]:
 
 def _wave(node: Written) -> tuple[str, Written] | None:
     """Return whether a node is an exponential or a wave, and its argument."""
-    if isinstance(node, Power) and node.base == EULER:
-        return "exponent", node.exponent
+    exponent = exponent_of(node)
+    if exponent is not None:
+        return "exponent", exponent
     if isinstance(node, Apply) and node.function in WAVES:
-        return ("exponent" if node.function == "exp" else "angle"), node.arguments[0]
+        return "angle", node.arguments[0]
     return None
 
 

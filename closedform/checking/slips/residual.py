@@ -82,6 +82,10 @@ def _instants(trial: Trial) -> list[Fraction]:
     return [start + share * unit for share in SAMPLED]
 
 
+LARGEST_SHOWN = 4000
+"""Binary exponents beyond which no decimals are worked out."""
+
+
 def _told(trial: Trial, pairs: Pairs, found: Difference) -> str:
     where = ""
     if isinstance(trial.true, ExactMatrix):
@@ -106,4 +110,6 @@ def _told(trial: Trial, pairs: Pairs, found: Difference) -> str:
 
 def _shown(value: arb) -> str:
     man, exp = value.mid().man_exp()
+    if abs(int(exp)) > LARGEST_SHOWN:
+        return "very much" if int(exp) > 0 else "very little"
     return exact_decimal(Fraction(int(man)) * Fraction(2) ** int(exp), SHOWN_DIGITS)

@@ -11,7 +11,7 @@ from flint import acb, arb, ctx
 from closedform.checking.slips.making import ZERO, number, over, times
 from closedform.checking.slips.measuring import distance, largest, real, size
 from closedform.checking.slips.trial import BITS, Trial
-from closedform.notation.written.tree import PI, Apply, Literal, Symbol, Written
+from closedform.notation.written.tree import PI, Apply, Literal, Symbol, Written, walk
 
 __all__ = ["Place", "Solved", "simplest", "solved", "to_places"]
 
@@ -81,6 +81,10 @@ def _forms(trial: Trial, place: Place, value: acb) -> Iterator[Written]:
     near = _near_integer(value)
     if near is not None:
         yield near
+    places = [n.last_place for n in walk(trial.tree) if isinstance(n, Literal) and n.is_decimal]
+    rounded = to_places(value, min(places)) if places and place.literal is None else None
+    if rounded is not None:
+        yield rounded
 
 
 def simplest(value: acb) -> Written | None:

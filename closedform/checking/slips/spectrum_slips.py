@@ -1,144 +1,28 @@
-"""Slips with eigenvalues, eigenvectors, P and J."""
+"""Slips with eigenvectors, P and J."""
 
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import replace
-from fractions import Fraction
 from itertools import permutations, product
-from typing import TypeGuard
 
 from closedform.algebra.elementary import Element
-from closedform.checking.claim import Claim, Group
-from closedform.checking.judge import judge
 from closedform.checking.judge_vectors import authors_diagonal, authors_matrix
 from closedform.checking.matrices import ExactMatrix, diagonal, identity
-from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips import names
-from closedform.checking.slips.making import ONE, ZERO, negated, number
-from closedform.checking.slips.numbers import is_bare
-from closedform.checking.slips.solving import Place, solved
+from closedform.checking.slips.making import ONE, ZERO, negated
 from closedform.checking.slips.spots import Spot
-from closedform.checking.slips.trial import Candidate, Point, Trial
-from closedform.checking.verdict import Slip
+from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (
     Array,
-    Listing,
-    Literal,
-    PlusMinus,
-    Sum,
     Written,
-    changed,
-    walk,
 )
 
-__all__ = ["canonical", "eigenvectors", "listed", "root_numbers", "transformations"]
+__all__ = ["canonical", "eigenvectors", "transformations"]
 
 MOST_ORDERS = 24
-
-
-def listed(claim: Claim, finding: Finding, setting: Setting) -> Slip | None:
-    """Return the slip in a list of eigenvalues that is wrong as a whole: signs, or counting."""
-    values = claim.values
-    turned = [negated(value) for value in values]
-    tried = [(names.SIGN_EIGENVALUE, "every eigenvalue", tuple(turned))]
-    if len(values) == 2 and all(isinstance(v, Sum) for v in values):
-        for k in range(2):
-            both = tuple(_term_turned(v, k) for v in values if isinstance(v, Sum))
-            tried.append((names.SIGN_EIGENVALUE, "both eigenvalues", both))
-    for name, where, new in tried:
-        if len(values) > 1 and _passes(claim, new, setting):
-            return Slip(name, where, Listing(new))
-    together = _same_number(claim, setting)
-    if together is not None:
-        return together
-    if finding.right is not None and isinstance(finding.right, Listing):
-        single = all(_alone(claim, k, setting) for k in range(len(claim.groups)))
-        if single and _passes(claim, finding.right.items, setting):
-            roots = setting.ground.truth.eigenvalues
-            defective = any(root.algebraic > root.geometric for root in roots)
-            name = names.GEOMETRIC if defective else names.MULTIPLICITY
-            return Slip(name, "how often each counts", finding.right)
-    return None
-
-
-def _same_number(claim: Claim, setting: Setting) -> Slip | None:
-    """Return the slip in a number that stands in several eigenvalues, as in a pair."""
-    wrong = [k for k in range(len(claim.groups)) if not _alone(claim, k, setting)]
-    if len(wrong) < 2:
-        return None
-    several = [{n for v in claim.groups[k].values for n in walk(v) if _is_count(n)} for k in wrong]
-    common = sorted(set.intersection(*several), key=lambda n: n.value)
-    for literal in common:
-        for share in (Fraction(1, 2), Fraction(2), Fraction(1, 4), Fraction(4)):
-            right = number(literal.value * share)
-            groups = list(claim.groups)
-            for k in wrong:
-                values = tuple(_replaced(v, literal, right) for v in groups[k].values)
-                groups[k] = replace(groups[k], values=values)
-            if judge(replace(claim, groups=tuple(groups)), setting).passes:
-                where = f"{plain_written(literal)} ought to be {plain_written(right)}"
-                items = tuple(group.values[-1] for group in groups)
-                return Slip(names.LIST_FACTOR, where, Listing(items))
-    return None
-
-
-def _is_count(node: Written) -> TypeGuard[Literal]:
-    return isinstance(node, Literal)
-
-
-def _replaced(tree: Written, old: Literal, new: Written) -> Written:
-    return changed(tree, lambda n: new if n == old else None)
-
-
-def _term_turned(tree: Sum, at: int) -> Written:
-    return Sum(tuple(negated(t) if k == at else t for k, t in enumerate(tree.terms)))
-
-
-def _passes(claim: Claim, values: tuple[Written, ...], setting: Setting) -> bool:
-    groups = tuple(Group((), (value,)) for value in values)
-    return judge(replace(claim, groups=groups), setting).passes
-
-
-def _alone(claim: Claim, at: int, setting: Setting) -> bool:
-    group = replace(claim.groups[at], names=(), note="")
-    return judge(replace(claim, groups=(group,)), setting).passes
-
-
-def root_numbers(trial: Trial) -> Iterator[Candidate]:
-    """Yield the formula of an eigenvalue with another number in one place."""
-    if not trial.roots:
-        return
-    first = changed(trial.tree, lambda n: n.operand if isinstance(n, PlusMinus) else None)
-    for root in trial.roots:
-        point = Point(trial.names, (root,))
-        inner = replace(trial, tree=first, points=(point,), roots=())
-        for spot in list(trial.spots()):
-            if not isinstance(spot.node, Literal):
-                continue
-            yield from _root_number(trial, inner, spot)
-
-
-def _root_number(trial: Trial, inner: Trial, spot: Spot) -> Iterator[Candidate]:
-    assert isinstance(spot.node, Literal)  # noqa: S101
-    literal = spot.node
-
-    def tree(new: Written) -> Written:
-        whole = trial.changed(spot, new)
-        return changed(whole, lambda n: n.operand if isinstance(n, PlusMinus) else None)
-
-    place = Place("number", "", literal.value, tree, literal)
-    for one in solved(inner, place):
-        right = one.written
-        twice = isinstance(right, Literal) and right.value / literal.value in (2, 4)
-        half = isinstance(right, Literal) and literal.value / right.value in (2, 4)
-        name = names.LIST_FACTOR if twice or half else names.ONE_NUMBER
-        if is_bare(trial.tree):
-            name = names.ONE_EIGENVALUE
-        where = f"{plain_written(literal)} ought to be {plain_written(right)}"
-        yield Candidate(name, where, trial.changed(spot, right))
+Rows = tuple[tuple[Written, ...], ...]
 
 
 def canonical(trial: Trial) -> Iterator[Candidate]:
@@ -148,25 +32,42 @@ def canonical(trial: Trial) -> Iterator[Candidate]:
     for spot in trial.spots():
         if not isinstance(spot.node, Array) or len(spot.node.rows) != len(spot.node.rows[0]):
             continue
-        rows, size = spot.node.rows, len(spot.node.rows)
-        places = [k for k in range(size - 1) if rows[k][k] == rows[k + 1][k + 1]]
-        for chosen in product((False, True), repeat=len(places)):
-            ones: dict[tuple[int, int], Written] = {
-                (k, k + 1): ONE if on else ZERO for k, on in zip(places, chosen, strict=True)
-            }
-            more = any(chosen) and all(rows[k][k + 1] == ZERO for k in places)
-            name = names.GEOMETRIC if more else names.CHAIN_ENTRY
-            where = "above the diagonal"
-            yield Candidate(name, where, trial.changed(spot, _with(rows, ones)))
-        for k in range(size):
+        yield from _with_ones(trial, spot, spot.node.rows)
+        yield from _with_other_entries(trial, spot, spot.node.rows)
+
+
+def _with_ones(trial: Trial, spot: Spot, rows: Rows) -> Iterator[Candidate]:
+    own = trial.own()
+    if not isinstance(own, ExactMatrix) or own.shape != (len(rows), len(rows)):
+        return
+    entries = own.rows
+    places = [k for k in range(len(rows) - 1) if entries[k][k] == entries[k + 1][k + 1]]
+    for chosen in product((False, True), repeat=len(places)):
+        ones: dict[tuple[int, int], Written] = {
+            (k, k + 1): ONE if on else ZERO for k, on in zip(places, chosen, strict=True)
+        }
+        more = any(chosen) and all(rows[k][k + 1] == ZERO for k in places)
+        name = names.GEOMETRIC if more else names.CHAIN_ENTRY
+        yield Candidate(name, "above the diagonal", trial.changed(spot, _with(rows, ones)))
+
+
+def _with_other_entries(trial: Trial, spot: Spot, rows: Rows) -> Iterator[Candidate]:
+    """Yield J with an eigenvalue, its real or its imaginary part in one place."""
+    field, size = trial.ground.field, len(rows)
+    own = trial.own()
+    for i in range(size):
+        for j in range(size):
             for value in trial.ground.eigenvalues:
-                entry = written_back(value)
-                name = names.SIGN_EIGENVALUE if entry == negated(rows[k][k]) else names.ENTRY
-                new = _with(rows, {(k, k): entry})
-                yield Candidate(name, f"entry {k + 1, k + 1}", trial.changed(spot, new))
+                parts = (value,) if field.im(value).is_zero else (field.re(value), field.im(value))
+                for part in parts if i != j else (value, *parts):
+                    found = isinstance(own, ExactMatrix) and own.shape == (size, size)
+                    opposite = found and isinstance(own, ExactMatrix) and own.rows[i][j] == -part
+                    name = names.SIGN_EIGENVALUE if opposite and i == j else names.ENTRY
+                    new = _with(rows, {(i, j): written_back(part)})
+                    yield Candidate(name, f"entry {i + 1, j + 1}", trial.changed(spot, new))
 
 
-def _with(rows: tuple[tuple[Written, ...], ...], entries: dict[tuple[int, int], Written]) -> Array:
+def _with(rows: Rows, entries: dict[tuple[int, int], Written]) -> Array:
     return Array(
         tuple(
             tuple(entries.get((i, j), entry) for j, entry in enumerate(row))
