@@ -107,6 +107,7 @@ def _demand_difference(value: Value, true: Value, entry: tuple[int, int], ground
     raise NotJudgedError("roots of degree three and more make it undecided")
 
 
+MOST_DECIMALS = 24
 FINER = (64, 512, 4096)
 
 
@@ -138,6 +139,9 @@ def _by_digits(
             return Comparison("different")
         raise NotJudgedError(unless)
     pairs = _pairs(claimed, true)
+    for one, _ in pairs:
+        if sum(isinstance(n, Literal) and n.is_decimal for n in walk(one)) > MOST_DECIMALS:
+            raise NotJudgedError(f"more than {MOST_DECIMALS} decimals in one formula")
     variables = sorted(
         {n.name for pair in pairs for tree in pair for n in walk(tree) if isinstance(n, Symbol)}
         - set(ground.enclosed)

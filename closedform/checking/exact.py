@@ -330,7 +330,10 @@ def applies(range_: Range, scope: Scope) -> bool:
     for one, sign, other in zip(members, range_.signs, members[1:], strict=False):
         if isinstance(one, ExactMatrix) or isinstance(other, ExactMatrix):
             raise NotJudgedError("matrices are compared")
-        difference = (other - one).at(scope.instant).sign()
+        gap = (other - one).at(scope.instant)
+        difference = gap.sign()
+        if difference is None and sign in ("=", "≠") and not gap.is_zero:
+            difference = 1
         if difference is None:
             raise NotJudgedError("the parameters do not decide in which piece an instant lies")
         if not {
@@ -339,6 +342,7 @@ def applies(range_: Range, scope: Scope) -> bool:
             ">": difference < 0,
             "≥": difference <= 0,
             "=": difference == 0,
+            "≠": difference != 0,
         }.get(sign, False):
             return False
     return True
@@ -381,10 +385,9 @@ def _integral(body: Written, variable: str, lower: Written, upper: Written, scop
     The variable takes the time's place; where the time itself occurs in the body, it is a
     constant meanwhile.
     """
-    field_ = scope.field
-    inner = replace(scope, time=variable, instant=None).with_symbols(
-        {scope.time: field_.name(HELD)}
-    )
+    field_, held = scope.field, f"{HELD} {scope.time}"
+    inner = replace(scope, time=variable, instant=None)
+    inner = inner.with_symbols({scope.time: field_.name(held)})
     value = exact(body, inner)
     if isinstance(value, ExactMatrix):
         raise NotJudgedError("an integral of a matrix has no value here")
@@ -394,5 +397,5 @@ def _integral(body: Written, variable: str, lower: Written, upper: Written, scop
         at = exact(end, scope)
         if isinstance(at, ExactMatrix):
             raise NotJudgedError("a bound of an integral is a number, not a matrix")
-        ends.append(antiderivative.at(at).substituted({HELD: field_.t}))
+        ends.append(antiderivative.at(at).substituted({held: field_.t}))
     return ends[0] - ends[1]

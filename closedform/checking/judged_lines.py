@@ -8,15 +8,17 @@ from dataclasses import dataclass, replace
 from closedform.checking.author import Author
 from closedform.checking.cases import Grounds
 from closedform.checking.claim import Claim, SourceLine
+from closedform.checking.conditions import grounds_meant, is_in_pieces
 from closedform.checking.facts import Facts
 from closedform.checking.judge import Judgement, judged, stated
 from closedform.checking.lines import ReadLine, read_line
+from closedform.checking.naming import in_order
 from closedform.checking.recognise import claims_of
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips import diagnosed
 from closedform.checking.truth import Truth
 from closedform.checking.verdict import LineVerdict, Slip, Word
-from closedform.notation.written.tree import Statement, Written
+from closedform.notation.written.tree import Statement, Written, walk
 
 __all__ = ["JudgedLine", "judged_lines", "verdict_on"]
 
@@ -30,8 +32,13 @@ GRAVEST_FIRST: tuple[Word, ...] = (
     "holds",
 )
 """A line that says several things has the verdict of the gravest finding."""
-EARLIER = ("definition", "identity")
-"""Claims that may give a name to something that the rest of a line uses."""
+MOST_PRODUCTS = 300_000
+"""Products of constants for one line: some seconds of work."""
+MOST_NODES = 1_500
+"""Parts of a line in which its slip is looked for."""
+
+
+NO_CASE = "it is said under a condition that holds in no case of the model"
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,21 +67,28 @@ class JudgedLine:
 def judged_lines(lines: Sequence[SourceLine], truth: Truth, grounds: Grounds) -> list[JudgedLine]:
     """Judge lines in one case of the model, each in the light of those before it.
 
-    A line that names a case of its own is judged in the cases that it allows, the first one in
-    which it holds.
+    A line that names a case of its own, in a comment or by a condition beside its formula, is
+    judged in the cases that this allows, the first one in which it holds; one whose pieces the
+    parameters tell apart has to hold in all cases.
     """
     ground = grounds.of(truth)
     read = [_read(line, ground.facts) for line in lines]
     author = Author(kept=ground.facts.names)
     found = []
-    for place, (line, _) in enumerate(read):
+    for place, (line, claims) in enumerate(read):
         later = tuple(claim for _, claims in read[place + 1 :] for claim in claims)
-        own = [ground]
+        own = grounds_meant(claims, ground, author, grounds)
+        in_pieces = is_in_pieces(claims, author, ground)
+        if in_pieces:
+            own = grounds.all()
         if line.line.where:
-            own = [grounds.of(other) for other in grounds.allowed(line.line.where, truth)]
+            own = tuple(map(grounds.of, grounds.allowed(line.line.where, truth)))
+        if not own:
+            line, own = replace(line, reading=None, trouble=NO_CASE), (ground,)
         for candidate in own:
+            candidate.field.grant(MOST_PRODUCTS)
             judged_line, after = _judged_line(line, Setting(candidate, author, later))
-            if judged_line.passes:
+            if judged_line.passes != in_pieces:
                 break
         author = after
         found.append(judged_line)
@@ -102,12 +116,18 @@ def _judged_line(read: ReadLine, setting: Setting) -> tuple[JudgedLine, Author]:
         return best, author
     for other in read.reading.others:
         found, after = _all(read, _claims(read, other, facts), setting, notes)
-        if found.passes:
+        if found.passes and not _gives_more_names(found, best):
             remark = "it holds as it can also be read"
             return replace(found, notes=(remark, *notes)), after
         if best.undecided and not found.undecided:
             best, author = found, after
     return best, author
+
+
+def _gives_more_names(one: JudgedLine, other: JudgedLine) -> bool:
+    """Whether one reading holds because it takes for a definition what another one judges."""
+    counts = [sum(j.claim.says == "definition" for j in line.judgements) for line in (one, other)]
+    return counts[0] > counts[1]
 
 
 def _all(
@@ -116,7 +136,7 @@ def _all(
     """Judge the claims of a line: first what gives names, then the rest, in order."""
     judgements, author = [], setting.author
     later = (*claims, *setting.later)
-    for claim in sorted(claims, key=lambda claim: claim.says not in EARLIER):
+    for claim in in_order(claims, setting.ground.facts):
         found = judged(claim, replace(setting, author=author, later=later))
         judgements.append(found)
         author = stated(author, found)
@@ -133,7 +153,7 @@ def verdict_on(line: JudgedLine) -> LineVerdict:
     gravest = min(line.judgements, key=lambda j: GRAVEST_FIRST.index(j.finding.word))
     finding = gravest.finding
     slip, reason = None, finding.reason
-    if finding.word == "fails":
+    if finding.word == "fails" and _is_small(gravest.claim):
         slip, reason = diagnosed(gravest.claim, finding, line.setting)
     elif finding.word == "carried":
         reason = f"it follows from line {gravest.carried_from}"
@@ -148,6 +168,11 @@ def verdict_on(line: JudgedLine) -> LineVerdict:
         (*line.notes, *finding.notes),
         reading.statements,
     )
+
+
+def _is_small(claim: Claim) -> bool:
+    """Whether a claim is small enough for its slip to be looked for."""
+    return len([node for value in claim.values for node in walk(value)]) <= MOST_NODES
 
 
 def _right(finding: Finding, slip: Slip | None) -> Written | None:

@@ -7,9 +7,12 @@ from dataclasses import dataclass
 from fractions import Fraction
 
 from closedform.algebra.elementary import Element, ElementaryField
-from closedform.checking.errors import SizeError
+from closedform.checking.errors import NotJudgedError, SizeError
 
 __all__ = ["ExactMatrix", "characteristic_coefficients", "column", "diagonal", "identity"]
+
+LARGEST_EXPANDED = 5
+LARGEST_POWER = 60
 
 
 @dataclass(frozen=True, slots=True)
@@ -90,8 +93,13 @@ class ExactMatrix:
         return ExactMatrix(self.field, tuple(zip(*self.rows, strict=True)))
 
     def power(self, exponent: int) -> ExactMatrix:
-        """Return an integer power; a negative one is that of the inverse."""
+        """Return an integer power; a negative one is that of the inverse.
+
+        Raises NotJudgedError beyond the exponent `LARGEST_POWER`.
+        """
         self.demand_square("a power")
+        if abs(exponent) > LARGEST_POWER:
+            raise NotJudgedError(f"a matrix to the power {exponent}")
         base = self.inverse() if exponent < 0 else self
         result = identity(self.field, self.shape[0])
         for _ in range(abs(exponent)):
@@ -109,8 +117,15 @@ class ExactMatrix:
         return ExactMatrix(self.field, tuple(tuple(row[size:]) for row in rows))
 
     def determinant(self) -> Element:
-        """Return the determinant, by expansion along the sparsest row for small matrices."""
+        """Return the determinant, by expansion along the sparsest row.
+
+        That of a larger matrix is (-1)^n c_0, with the constant coefficient c_0 of the
+        characteristic polynomial.
+        """
         self.demand_square("a determinant")
+        if self.shape[0] > LARGEST_EXPANDED:
+            constant = characteristic_coefficients(self)[0]
+            return -constant if self.shape[0] % 2 else constant
         return _determinant(self.field, [list(row) for row in self.rows])
 
     def trace(self) -> Element:

@@ -12,6 +12,8 @@ from closedform.algebra.fraction_field import Whole
 __all__ = ["LARGEST_EXPONENT", "Constant", "Parts"]
 
 LARGEST_EXPONENT = 4096
+LARGEST_PRODUCT = 200_000
+"""Terms that are multiplied with one another in a product of two polynomials."""
 
 Parts = dict[int, Whole]
 """Polynomials by the set of roots before which they stand, as a bit mask; none is zero."""
@@ -82,6 +84,8 @@ class Constant:
         parts: Parts = {}
         for m, p in one.items():
             for n, q in two.items():
+                if len(p) * len(q) > LARGEST_PRODUCT:
+                    raise NotElementaryError("a polynomial with too many terms")
                 pq = p * q
                 if not m & n:
                     parts[m ^ n] = parts[m ^ n] + pq if m ^ n in parts else pq

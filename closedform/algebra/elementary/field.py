@@ -77,6 +77,13 @@ class ElementaryField:
         self.one, self.i, self.pi = map(self.zero.of, (tower.one, tower.i, tower.pi))
         self.t = self.zero.time
 
+    def grant(self, products: int) -> None:
+        """Let so many products of constants be worked out from now on.
+
+        Beyond, operations raise NotElementaryError: what takes longer is not decided.
+        """
+        self._context.sums.left = products
+
     @property
     def e(self) -> Element:
         """The number 2.71828…."""

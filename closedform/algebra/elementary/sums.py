@@ -12,12 +12,16 @@ from math import comb
 
 from closedform.algebra.elementary.angles import Angles
 from closedform.algebra.elementary.constant import Constant
+from closedform.algebra.elementary.errors import NotElementaryError
 from closedform.algebra.elementary.tower import Tower
 
 __all__ = ["Sums", "Terms"]
 
 Terms = dict[tuple[int, int], Constant]
 """Coefficients, none of them zero, by the number of an exponent and the power of t."""
+
+UNBOUNDED = 10**12
+"""Products of constants that are never reached in bounded time."""
 
 
 class Sums:
@@ -28,6 +32,7 @@ class Sums:
         self._numbers: dict[tuple[Constant, Constant], int] = {}
         self.exponents: list[tuple[Constant, Constant]] = []
         self._added: dict[tuple[int, int], tuple[int, Constant]] = {}
+        self.left = UNBOUNDED
         self.exponent(tower.zero, tower.zero)
 
     def exponent(self, rate: Constant, offset: Constant) -> tuple[int, Constant]:
@@ -65,6 +70,7 @@ class Sums:
         for these, those in ((one, other), (other, one)):
             if len(those) == 1 and (0, 0) in those:
                 return self.scaled(these, those[0, 0])
+        self.spend(len(one) * len(other))
         total: Terms = {}
         for (i, k), a in one.items():
             for (j, m), b in other.items():
@@ -74,6 +80,15 @@ class Sums:
                     product = product * factor
                 _put(total, (number, k + m), product)
         return total
+
+    def spend(self, products: int) -> None:
+        """Take products of constants from what may still be worked out.
+
+        Raises NotElementaryError where nothing is left.
+        """
+        self.left -= products
+        if self.left < 0:
+            raise NotElementaryError("it takes too many operations to be worked out")
 
     def _sum_of_exponents(self, i: int, j: int) -> tuple[int, Constant]:
         if not i or not j:
