@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field, replace
 
 from closedform.checking.claim import Claim
@@ -68,6 +68,11 @@ class Author:
             definition_roots=roots,
             right_values={**self.right_values, **right},
         )
+
+    def mended(self, names: Iterable[str]) -> Author:
+        """Return the author with the right values of names that wrong lines gave."""
+        right = {name: self.right_values[name] for name in names}
+        return replace(self, definitions={**self.definitions, **right})
 
     def otherwise(self) -> Author:
         """Return the author with the other choice for every name that leaves one."""

@@ -46,6 +46,10 @@ class Grounds:
             self._made[id(truth)] = ground_of(truth)
         return self._made[id(truth)]
 
+    def all(self) -> tuple[Ground, ...]:
+        """Return the grounds of all cases, in the order of the model."""
+        return tuple(map(self.of, self._truths))
+
     def allowed(self, where: str, truth: Truth) -> tuple[Truth, ...]:
         """Return the cases that a line allows: the one at hand first if it is among them."""
         found = allowed_cases(self._truths, where, self._path)

@@ -334,7 +334,9 @@ def _put_partly(ground: Ground, names: frozenset[str]) -> Ground:
     """Return a ground of its own for what is left of the parameters: their signs are others."""
     left = ground_of(substituted(ground.truth, names))
     own = next((s for s in ground.stretches if s.inside == ground.scope.instant), None)
-    left = replace(left, put_in=names, facts=ground.facts)
+    values = ground.truth.values or {}
+    known = {name: exact(values[name], left.scope) for name in sorted(names)}
+    left = replace(left, put_in=names, facts=ground.facts, scope=left.scope.with_symbols(known))
     return left if own is None else left.within(own)
 
 

@@ -43,9 +43,10 @@ from closedform.checking.judge_vectors import (
     judge_transformation,
 )
 from closedform.checking.left_sides import base_and_indices
+from closedform.checking.order import is_order, judge_order
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.signs import both_signs
-from closedform.notation.written.tree import Symbol, Written
+from closedform.notation.written.tree import Symbol, Written, walk
 
 __all__ = ["Judgement", "judge", "judged", "stated"]
 
@@ -95,6 +96,8 @@ def judge(claim: Claim, setting: Setting) -> Finding:
     What cannot be decided is `not read`, with the reason.
     """
     judge_it = JUDGES.get(claim.says, judge_identity)
+    if claim.says == "identity" and any(map(is_order, claim.statements)):
+        judge_it = judge_order
     try:
         try:
             return judge_it(claim, setting)
@@ -110,6 +113,8 @@ def judge(claim: Claim, setting: Setting) -> Finding:
 def judged(claim: Claim, setting: Setting) -> Judgement:
     """Return the finding on a claim, carried where it follows from an earlier wrong line."""
     finding = judge(claim, setting)
+    if finding.passes and claim.says in ("definition", "identity"):
+        return _resting(claim, finding, setting)
     if finding.word != "fails":
         return Judgement(claim, finding)
     if setting.author.alternatives:
@@ -126,18 +131,32 @@ def judged(claim: Claim, setting: Setting) -> Judgement:
     return Judgement(claim, replace(finding, word="carried"), root)
 
 
+def _resting(claim: Claim, finding: Finding, setting: Setting) -> Judgement:
+    """Return the judgement of what holds, carried if it does so by names that are wrong only."""
+    author = setting.author
+    wrong = _wrong_names(claim, author)
+    if not wrong:
+        return Judgement(claim, finding)
+    right = judge(claim, replace(setting, author=author.mended(wrong)))
+    if right.passes:
+        return Judgement(claim, finding)
+    root = min(author.definition_roots[name] for name in wrong)
+    return Judgement(claim, replace(right, word="carried"), root)
+
+
+def _wrong_names(claim: Claim, author: Author) -> list[str]:
+    """Return the names in the values of a claim that wrong lines gave, and have a right value."""
+    used = {n.name for value in claim.values for n in walk(value) if isinstance(n, Symbol)}
+    return sorted(used & author.definition_roots.keys() & author.right_values.keys())
+
+
 def _by_mended_names(claim: Claim, setting: Setting) -> int | None:
     """Return the root of a wrong definition with whose right value the claim would hold."""
     author = setting.author
-    mended = {
-        name: author.right_values[name]
-        for name in author.definition_roots
-        if name in author.right_values
-    }
+    mended = sorted(author.definition_roots.keys() & author.right_values.keys())
     if not mended:
         return None
-    right = replace(author, definitions={**author.definitions, **mended})
-    if not judge(claim, replace(setting, author=right)).passes:
+    if not judge(claim, replace(setting, author=author.mended(mended))).passes:
         return None
     return min(author.definition_roots[name] for name in mended)
 
@@ -147,8 +166,13 @@ def stated(author: Author, judgement: Judgement) -> Author:
     claim, finding = judgement.claim, judgement.finding
     values = tuple(author.put_in(group.values[-1]) for group in claim.groups if group.values)
     root = judgement.carried_from
+    right: dict[str, Written] = {}
+    wrong = _wrong_names(claim, author) if claim.says == "definition" else []
     if finding.word == "fails":
         root = claim.line.number
+    elif root is None and wrong:
+        root = min(author.definition_roots[name] for name in wrong)
+        right = dict(_named(claim, author.mended(wrong)))
     entry = Entry(replace(claim, groups=_opened(claim, author)), values, root)
     names = dict(_named(claim, author))
     angles = {name: a for group in claim.groups for name, a in angles_of(group, author).items()}
@@ -157,8 +181,9 @@ def stated(author: Author, judgement: Judgement) -> Author:
         author,
         alternatives={**author.alternatives, **{n: other for n, (_, other) in angles.items()}},
     )
-    right = dict.fromkeys(names, finding.right) if finding.right is not None else {}
-    return author.after(entry, names, right if len(names) == 1 else {})
+    if finding.right is not None and len(names) == 1:
+        right = dict.fromkeys(names, finding.right)
+    return author.after(entry, names, right)
 
 
 def _opened(claim: Claim, author: Author) -> tuple[Group, ...]:

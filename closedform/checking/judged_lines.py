@@ -75,7 +75,8 @@ def judged_lines(lines: Sequence[SourceLine], truth: Truth, grounds: Grounds) ->
     read = [_read(line, ground.facts) for line in lines]
     author = Author(kept=ground.facts.names)
     found = []
-    for place, (line, claims) in enumerate(read):
+    for place, (as_read, claims) in enumerate(read):
+        line = as_read
         later = tuple(claim for _, claims in read[place + 1 :] for claim in claims)
         own = grounds_meant(claims, ground, author, grounds)
         in_pieces = is_in_pieces(claims, author, ground)

@@ -13,7 +13,17 @@ from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.exact import Value
 from closedform.checking.ground import Ground
 from closedform.checking.setting import Finding, Setting
-from closedform.notation.written.tree import Literal, Negation, Symbol, Written, changed, walk
+from closedform.notation.written.tree import (
+    Apply,
+    Literal,
+    Negation,
+    Power,
+    Symbol,
+    Transform,
+    Written,
+    changed,
+    walk,
+)
 
 __all__ = ["held_against", "place_text"]
 
@@ -30,10 +40,10 @@ def held_against(
     """Return the finding on a claim all of whose members ought to have one true value.
 
     `true` and `right` give that value and its formula on a ground; `prepare` changes a member
-    before it is judged.  A member in names that stand for nothing, as P e^(Jt) P^-1 where
-    no P was stated, is left out if another member remains.
+    before it is judged.  A general member, as P e^(Jt) P^-1 where no P was stated or the inverse
+    transform of X(s), is left out if another member remains.
 
-    Raises:  NotJudgedError if no member can be judged.
+    Raises:  NotJudgedError if another member, or none, can be judged.
     """
     skipped: list[NotJudgedError] = []
     passed: list[Comparison] = []
@@ -45,7 +55,9 @@ def held_against(
         try:
             about = claim.is_approximate(value)
             found = compare(opened, truth, scope, ground, approximate=about)
-        except (UnknownNameError, NotJudgedError) as error:
+        except NotJudgedError as error:
+            if not _is_general(value, error):
+                raise
             skipped.append(error)
             continue
         if not found.passes:
@@ -64,6 +76,27 @@ def held_against(
         told = next(found.reason for found in passed if found.how == "digits")
         return Finding("holds to the digits shown", told, notes=notes)
     return Finding("holds", notes=notes)
+
+
+GENERAL = frozenset({"P", "J", "T", "V", "S", "Q", "M", "U", "X", "D", "Lambda"})
+"""Names that a general line uses for the matrices of a decomposition, stated or not."""
+
+
+def _is_general(member: Written, error: NotJudgedError) -> bool:
+    """Whether a member only tells by which way the next one was found."""
+    if isinstance(error, UnknownNameError):
+        return error.name in GENERAL and any(map(_is_matrix_part, walk(member)))
+    return any(isinstance(node, Transform) for node in walk(member))
+
+
+def _is_matrix_part(node: Written) -> bool:
+    """Whether a node shows that letters beside it are matrices: P^-1, a transpose."""
+    match node:
+        case Apply("inverse" | "transpose" | "diag"):
+            return True
+        case Power(Symbol(name), Negation(Literal(value=one))) if one == 1:
+            return name in GENERAL
+    return False
 
 
 def corrected(member: Written, match: DigitsMatch | None) -> Written | None:

@@ -9,6 +9,7 @@ from fractions import Fraction
 from closedform.checking.claim import Claim, Group, SourceLine
 from closedform.checking.facts import Facts
 from closedform.checking.left_sides import Left, base_and_indices, left_of
+from closedform.checking.order import is_order, parted
 from closedform.notation.written.tree import (
     Apply,
     Array,
@@ -43,11 +44,15 @@ def claims_of(
 
     `of` and `at` are what the author states beside the line, read.
     """
+    statements = parted(statements, facts)
     if line.says:
         return _stated(line, statements, facts, of, at)
     found: list[Claim] = []
     roots: list[Statement] = []
     for statement in statements:
+        if is_order(statement):
+            found.append(_order(line, statement))
+            continue
         left = _left(statement, facts)
         if (left is not None and left.says == "eigenvalues") or (
             roots and left is None and len(statement.members) == 1 and not found
@@ -73,6 +78,9 @@ def _stated(
         return (replace(claim, stated=True),)
     claims = []
     for statement in statements:
+        if is_order(statement):
+            claims.append(_order(line, statement))
+            continue
         left = _left(statement, facts)
         subject = line.of if says not in ("eigenvector", "generalized eigenvector") else ""
         named = left if left is not None and left.says == says else None
@@ -95,6 +103,12 @@ def _called(statement: Statement, subject: str) -> str:
     """Return the name of something that the model does not have, for it to be told so."""
     first = statement.members[0]
     return first.name if isinstance(first, Jet) and len(statement.members) > 1 else subject
+
+
+def _order(line: SourceLine, statement: Statement) -> Claim:
+    """Return the claim of a chain with inequalities in it."""
+    group = Group((), statement.members, statement.unit, statement.note)
+    return Claim(line, (statement,), "identity", groups=(group,))
 
 
 def _known_subject(subject: str, facts: Facts) -> str:

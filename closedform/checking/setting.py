@@ -71,7 +71,8 @@ class Setting:
         """Return the meaning of names in the author's formulas."""
         facts = ground.facts
         symbols: dict[str, Value] = {
-            name: ground.scope.symbols[name] for name in ground.truth.parameters
+            name: ground.scope.symbols[name]
+            for name in (*ground.truth.parameters, *sorted(ground.put_in))
         }
         symbols[SPECTRAL] = ground.field.name(SPECTRAL)
         if "A" not in facts.names:
