@@ -75,7 +75,8 @@ def compare(
         found = _by_digits(claimed, true, ground, unless="", approximate=approximate)
         if found.how != "different":
             return found
-        return Comparison("different", found.reason, different[0], different, found.match)
+        wrong = _wrong_entries(found.match, true) or different
+        return Comparison("different", found.reason, wrong[0], wrong, found.match)
     return Comparison("different", "", different[0], different)
 
 
@@ -174,6 +175,16 @@ def _is_apart(claimed: Written, true: Value, ground: Ground) -> bool:
     except NoValueError:
         return False
     return found is not None
+
+
+def _wrong_entries(match: DigitsMatch | None, true: Value) -> tuple[tuple[int, int], ...]:
+    """Return the entries of a matrix, counted from 1, whose digits are wrong."""
+    if match is None or not isinstance(true, ExactMatrix):
+        return ()
+    pairs = [found.pair for found in match.wrong]
+    pairs += [match.pair] if match.pair is not None else []
+    width = true.shape[1]
+    return tuple((pair // width + 1, pair % width + 1) for pair in dict.fromkeys(pairs))
 
 
 def _pairs(claimed: Written, true: Value) -> tuple[tuple[Written, Written], ...]:

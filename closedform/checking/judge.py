@@ -122,6 +122,9 @@ def judged(claim: Claim, setting: Setting) -> Judgement:
         if other.passes:
             note = "it holds with the other angle that an earlier line allows"
             return Judgement(claim, replace(other, notes=(*other.notes, note)))
+        if _hangs_on_an_angle(claim, setting):
+            reason = "the line that gives the angle leaves its quadrant open"
+            return Judgement(claim, Finding("not read", reason))
     try:
         root = carried_from(claim, setting) or _by_mended_names(claim, setting)
     except OUTSIDE:
@@ -150,10 +153,19 @@ def _wrong_names(claim: Claim, author: Author) -> list[str]:
     return sorted(used & author.definition_roots.keys() & author.right_values.keys())
 
 
+def _hangs_on_an_angle(claim: Claim, setting: Setting) -> bool:
+    """Whether an angle occurs whose tangent, sine or cosine has parameters of any sign in it."""
+    author, parameters = setting.author, set(setting.ground.truth.parameters)
+    used = {node.name for v in claim.values for node in walk(v) if isinstance(node, Symbol)}
+    angles = [author.alternatives[name] for name in used & set(author.alternatives)]
+    inside = {n.name for tree in angles for n in walk(tree) if isinstance(n, Symbol)}
+    return bool(inside & parameters) and setting.ground.truth.values is None
+
+
 def _by_mended_names(claim: Claim, setting: Setting) -> int | None:
     """Return the root of a wrong definition with whose right value the claim would hold."""
     author = setting.author
-    mended = sorted(author.definition_roots.keys() & author.right_values.keys())
+    mended = _wrong_names(claim, author)
     if not mended:
         return None
     if not judge(claim, replace(setting, author=author.mended(mended))).passes:
