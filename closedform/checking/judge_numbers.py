@@ -5,15 +5,18 @@ from __future__ import annotations
 from collections.abc import Iterator
 from fractions import Fraction
 
+from flint import acb
+
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.claim import Claim
 from closedform.checking.compare import compare
 from closedform.checking.constants import constant_values, is_constant_of_integration
 from closedform.checking.errors import NotJudgedError, UnknownNameError
-from closedform.checking.exact import Value
+from closedform.checking.exact import Value, exact
 from closedform.checking.ground import Ground
 from closedform.checking.judge_functions import CONSTANTS, solution_value
 from closedform.checking.judging import held_against
+from closedform.checking.left_sides import base_and_indices
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.written_back import written_back
@@ -44,8 +47,11 @@ def judge_value(claim: Claim, setting: Setting) -> Finding:
 
 
 def judge_quantity(claim: Claim, setting: Setting) -> Finding:
-    """Judge a quantity that belongs to the eigenvalues: any mode of the model may be meant."""
-    failed: Finding | None = None
+    """Judge a quantity that belongs to the eigenvalues: any mode of the model may be meant.
+
+    If none is, the one is told that is nearest.
+    """
+    failed: list[Finding] = []
     for at in range(len(list(_quantities(claim, setting.ground)))):
 
         def true(ground: Ground, at: int = at) -> Value:
@@ -54,12 +60,31 @@ def judge_quantity(claim: Claim, setting: Setting) -> Finding:
         finding = held_against(claim, setting, true, lambda g: written_back(true(g)))
         if finding.passes:
             return finding
-        failed = failed or finding
-    if failed is None:
+        failed.append(finding)
+    if not failed:
         if claim.stated:
             raise NotJudgedError(f"the model has no {claim.says}")
         return judge_definition(claim, setting)
-    return failed
+    return failed[_nearest(failed, setting.ground)]
+
+
+def _nearest(failed: list[Finding], ground: Ground) -> int:
+    """Return which finding is about the value nearest to what stands there; 0 if none is."""
+    best, least = 0, None
+    for k, finding in enumerate(failed):
+        if len(finding.pairs) != 1:
+            return 0
+        claimed, true = finding.pairs[0]
+        try:
+            value = exact(claimed, ground.scope)
+        except (NotJudgedError, NotElementaryError):
+            return 0
+        if not isinstance(value, Element) or not isinstance(true, Element):
+            return 0
+        off = abs((value - true).enclosure(acb(0), ground.sampled()))
+        if least is None or off < least:
+            best, least = k, off
+    return best
 
 
 def _quantities(claim: Claim, ground: Ground) -> Iterator[Element]:
@@ -68,7 +93,7 @@ def _quantities(claim: Claim, ground: Ground) -> Iterator[Element]:
     in_hertz = any(group.unit.strip() in ("Hz", "1/s") for group in claim.groups)
     turn = (field.number(Fraction(2)) * field.pi) if in_hertz else field.one
     for half, square in _pairs(ground):
-        yield from _of_pair(claim.says, half, square, turn)
+        yield from _of_pair(claim.says, half, square, turn, damped=_names_damped(claim))
     if claim.says in ("time constant", "half-life"):
         for value in ground.eigenvalues:
             if not value.is_zero and field.im(value).is_zero:
@@ -80,7 +105,15 @@ def _quantities(claim: Claim, ground: Ground) -> Iterator[Element]:
                 )
 
 
-def _of_pair(says: str, half: Element, square: Element, turn: Element) -> Iterator[Element]:
+def _names_damped(claim: Claim) -> bool:
+    """Whether a name says that the damped motion is meant: T_d."""
+    names = (name.name for name in claim.names if isinstance(name, Symbol))
+    return any(base_and_indices(name)[1].startswith("d") for name in names)
+
+
+def _of_pair(
+    says: str, half: Element, square: Element, turn: Element, *, damped: bool
+) -> Iterator[Element]:
     """Yield a quantity of s^2 + 2 half s + square, for roots that are a pair or real."""
     field = half.field
     natural = field.sqrt(square)
@@ -94,7 +127,7 @@ def _of_pair(says: str, half: Element, square: Element, turn: Element) -> Iterat
         case "period":
             two_pi = field.number(Fraction(2)) * field.pi
             yield two_pi / field.sqrt(square - half * half)
-            if not half.is_zero:
+            if not half.is_zero and not damped:
                 yield two_pi / natural
         case "time constant":
             if not half.is_zero:

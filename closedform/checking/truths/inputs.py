@@ -20,7 +20,7 @@ def inputs_of(model: DrivenModel) -> dict[str, tuple[Expression, ...]]:
     return {
         given.formula.text: formulas
         for given, formulas in zip(model.inputs, by_column, strict=True)
-        if isinstance(given.formula, Name) and given.formula.text != model.time
+        if given.name and isinstance(given.formula, Name)
     }
 
 
