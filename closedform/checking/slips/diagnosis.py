@@ -20,7 +20,12 @@ from closedform.checking.slips.edits import (
     term_signs,
 )
 from closedform.checking.slips.factors import constants, factors, left_out, normalised
-from closedform.checking.slips.lost_factors import inverted, missing_times, missing_waves
+from closedform.checking.slips.lost_factors import (
+    inverted,
+    missing_times,
+    missing_waves,
+    other_arguments,
+)
 from closedform.checking.slips.matrix_slips import (
     inverses,
     rearranged,
@@ -79,6 +84,7 @@ LAST: tuple[Source, ...] = (
     other_names,
     root_numbers,
     one_number,
+    other_arguments,
     left_out,
     extra_terms,
     factors,

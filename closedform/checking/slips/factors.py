@@ -22,7 +22,7 @@ from closedform.checking.slips.trial import BITS, Candidate, Trial
 from closedform.checking.slips.wording import part_text
 from closedform.checking.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
-from closedform.notation.written.tree import Sum, Written
+from closedform.notation.written.tree import Literal, Sum, Written
 
 __all__ = ["constants", "factors", "left_out", "normalised"]
 
@@ -120,6 +120,8 @@ def _without(tree: Written, missing: Written) -> Written:
     rest = tuple(term for term in terms if term != negated(missing))
     if len(rest) == len(terms):
         return _added(tree, missing)
+    if not rest:
+        return Literal(Fraction(0))
     return rest[0] if len(rest) == 1 else Sum(rest)
 
 

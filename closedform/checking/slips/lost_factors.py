@@ -6,7 +6,7 @@ from collections.abc import Iterator
 
 from closedform.algebra.elementary import Element
 from closedform.checking.slips import names
-from closedform.checking.slips.making import contains, over, times
+from closedform.checking.slips.making import contains, exponent_of, exponential, over, times
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed, wave_above
 from closedform.checking.written_back import written_back
@@ -22,9 +22,9 @@ from closedform.notation.written.tree import (
     walk,
 )
 
-__all__ = ["inverted", "missing_times", "missing_waves"]
+__all__ = ["inverted", "missing_times", "missing_waves", "other_arguments"]
 
-WAVES = ("sin", "cos", "sinh", "cosh", "exp")
+WAVES = ("sin", "cos", "sinh", "cosh")
 
 
 def missing_times(trial: Trial) -> Iterator[Candidate]:
@@ -34,8 +34,9 @@ def missing_times(trial: Trial) -> Iterator[Candidate]:
         node = spot.node
         if contains(node, t):
             continue
-        if isinstance(node, Power) and node.base == EULER:
-            new: Written = Power(EULER, times(node.exponent, t))
+        exponent = exponent_of(node)
+        if exponent is not None:
+            new = exponential(times(exponent, t), node)
         elif isinstance(node, Apply) and node.function in WAVES:
             new = Apply(node.function, (times(node.arguments[0], t),))
         elif isinstance(spot.outer, Sum) and wave_above(spot) in (*WAVES, "exp"):
@@ -64,6 +65,27 @@ def _is_wave(node: Written) -> bool:
     if isinstance(node, Power):
         return node.base == EULER
     return isinstance(node, Apply) and node.function in WAVES
+
+
+def other_arguments(trial: Trial) -> Iterator[Candidate]:
+    """Yield the formula with the argument of another of its waves or exponentials in one."""
+    t = Symbol(trial.ground.truth.time)
+    waves = [
+        node.arguments[0]
+        for node in walk(trial.back(trial.tree))
+        if isinstance(node, Apply) and node.function in WAVES and contains(node, t)
+    ]
+    exponents = [x for n in walk(trial.back(trial.tree)) if (x := exponent_of(n)) is not None]
+    for spot in trial.spots():
+        node, own = spot.node, exponent_of(spot.node)
+        if own is not None:
+            for other in dict.fromkeys(exponents):
+                new = trial.changed(spot, exponential(other, node))
+                yield Candidate(names.OTHER_RATE, placed(trial, spot, part_text(node)), new)
+        elif isinstance(node, Apply) and node.function in WAVES:
+            for other in dict.fromkeys(waves):
+                new = trial.changed(spot, Apply(node.function, (other,)))
+                yield Candidate(names.FREQUENCY_FACTOR, placed(trial, spot, part_text(node)), new)
 
 
 def inverted(trial: Trial) -> Iterator[Candidate]:

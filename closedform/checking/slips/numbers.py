@@ -5,11 +5,12 @@ from __future__ import annotations
 from collections.abc import Iterator
 from fractions import Fraction
 
-from flint import ctx
+from flint import acb, ctx
 
 from closedform.checking.slips import names
 from closedform.checking.slips.digit_slips import digit_slip
 from closedform.checking.slips.making import times
+from closedform.checking.slips.measuring import real
 from closedform.checking.slips.rate_places import rate_places
 from closedform.checking.slips.rates import rate_slip
 from closedform.checking.slips.solving import Place, Solved, simplest, solved
@@ -134,9 +135,22 @@ def _told(trial: Trial, one: Solved) -> tuple[str, str]:
         return _general_name(trial, place), f"{place.where}: a factor {right} is missing"
     assert place.literal is not None  # noqa: S101  a number stands there
     printed = plain_written(place.literal)
-    name = digit_slip(place.literal, one.written) or _general_name(trial, place)
+    name = digit_slip(place.literal, one.written) or _rate_lost(trial, one)
+    name = name or _general_name(trial, place)
     where = f"{place.where}: {printed} ought to be {right}"
     return name, where.removeprefix("a number: ").removeprefix(": ")
+
+
+def _rate_lost(trial: Trial, one: Solved) -> str:
+    """Return the name of the slip if a number was to be divided by a rate, as an integral asks."""
+    if trial.claim.says not in ("solution", "output") or not trial.ground.truth.drive:
+        return ""
+    with ctx.workprec(BITS):
+        base = trial.setting.ground.sampled()
+        rates = [abs(v.enclosure(acb(0), base)) for v in trial.ground.eigenvalues]
+        ratio = abs(real(one.place.before) / one.value)
+        near = [r for r in rates if abs(r - ratio) < ratio / 10**9 and not r.contains(1)]
+    return names.SUBSTITUTION if near else ""
 
 
 def _general_name(trial: Trial, place: Place) -> str:

@@ -139,7 +139,9 @@ def _rational(value: arb) -> Fraction | None:
 
 def _root(trial: Trial, place: Place) -> acb | None:
     """Solve for the number by secants, at the entry and point where it matters first."""
-    shares = (1, Fraction(1, 4), 4) if place.kind == "exponent" else (1,)
+    shares = {"exponent": (1, Fraction(1, 4), 4), "term": (1,)}.get(
+        place.kind, (1, Fraction(2, 5), Fraction(9, 5))
+    )
     starts = [place.before * share for share in shares]
     if place.kind == "exponent" and place.before:
         starts.append(1 / place.before)
