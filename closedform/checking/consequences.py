@@ -14,6 +14,7 @@ from closedform.checking.exact import Value
 from closedform.checking.exponential import eigenvalues_of, matrix_exponential
 from closedform.checking.ground import SPECTRAL, Ground
 from closedform.checking.judge_spectrum import polynomial_of, roots_claimed
+from closedform.checking.matched import eigenvalues_for, eigenvectors_for
 from closedform.checking.matrices import (
     ExactMatrix,
     characteristic_coefficients,
@@ -181,27 +182,67 @@ def _transitions(setting: Setting, ground: Ground) -> Iterator[Derived]:
     """Yield e^(At) as the author's P, e^(Jt) and P^(-1) give it, or the author's own."""
     yield from _matrices("exp A", setting, ground)
     for matrix in _matrices("matrix", setting, ground):
-        if isinstance(matrix.value, ExactMatrix):
-            yield matrix.joined(matrix_exponential(matrix.value))
+        if isinstance(matrix.value, ExactMatrix) and matrix.root is not None:
+            yield from _as_far_as_known(_exponential(matrix))
     left = [*_matrices("P", setting, ground), *_transformations(setting, ground)]
-    middle = [*_matrices("exp J", setting, ground), *_block_exponentials(setting, ground)]
+    middle = [
+        *_matrices("exp J", setting, ground),
+        *_as_far_as_known(_block_exponentials(setting, ground)),
+    ]
     if _is_canonical_itself(setting, ground):
         left.append(Derived(identity(ground.field, ground.size)))
     for p in left:
-        assert isinstance(p.value, ExactMatrix)  # noqa: S101  made so
-        for e in middle or list(_own_exponential(p, ground)):
-            assert isinstance(e.value, ExactMatrix)  # noqa: S101
-            for q in (*_matrices("P inverse", setting, ground), p.joined(p.value.inverse())):
-                assert isinstance(q.value, ExactMatrix)  # noqa: S101
-                yield p.joined(p.value @ e.value @ q.value, e, q)
-    yield from _companions(setting, ground)
+        for e in middle or list(_own_exponentials(p, ground)):
+            yield from _as_far_as_known(_product(p, e, setting, ground))
+    for e in middle if not left else ():
+        for p in _own_vectors(e, ground):
+            yield from _as_far_as_known(_product(p, e, setting, ground))
+    yield from _as_far_as_known(_companions(setting, ground))
 
 
-def _own_exponential(p: Derived, ground: Ground) -> Iterator[Derived]:
-    """Yield e^(P^-1 A P t), for a P that was stated without J."""
+def _as_far_as_known(found: Iterator[Derived]) -> Iterator[Derived]:
+    """Yield what can be worked out: the first that cannot is the last."""
+    while True:
+        try:
+            yield next(found)
+        except (StopIteration, *OUTSIDE):
+            return
+
+
+def _exponential(matrix: Derived) -> Iterator[Derived]:
+    if isinstance(matrix.value, ExactMatrix):
+        yield matrix.joined(matrix_exponential(matrix.value))
+
+
+def _product(p: Derived, e: Derived, setting: Setting, ground: Ground) -> Iterator[Derived]:
+    """Yield P e^(Jt) P^(-1), with the author's P^(-1) and with the right one."""
+    assert isinstance(p.value, ExactMatrix)  # noqa: S101  made so
+    assert isinstance(e.value, ExactMatrix)  # noqa: S101
+    for q in (*_matrices("P inverse", setting, ground), p.joined(p.value.inverse())):
+        assert isinstance(q.value, ExactMatrix)  # noqa: S101
+        yield p.joined(p.value @ e.value @ q.value, e, q)
+
+
+def _own_exponentials(p: Derived, ground: Ground) -> Iterator[Derived]:
+    """Yield e^(Jt) for a P that was stated without J: its columns tell the order."""
     assert isinstance(p.value, ExactMatrix)  # noqa: S101
-    candidates = ground.eigenvalues
-    yield Derived(matrix_exponential(p.value.inverse() @ ground.matrix @ p.value, candidates))
+    if p.root is None:
+        product = p.value.inverse() @ ground.matrix @ p.value
+        yield Derived(matrix_exponential(product, ground.eigenvalues))
+        return
+    for values in eigenvalues_for(p.value, ground):
+        yield Derived(matrix_exponential(diagonal(ground.field, values)))
+
+
+def _own_vectors(e: Derived, ground: Ground) -> Iterator[Derived]:
+    """Yield P for a diagonal e^(Jt) that was stated without P."""
+    assert isinstance(e.value, ExactMatrix)  # noqa: S101
+    zero = ground.field.zero
+    rates = e.value.mapped(Element.derivative).mapped(lambda entry: entry.at(zero))
+    size = range(ground.size)
+    if all(rates.rows[i][j].is_zero for i in size for j in size if i != j):
+        for p in eigenvectors_for([rates.rows[k][k] for k in size], ground):
+            yield Derived(p)
 
 
 def _is_canonical_itself(setting: Setting, ground: Ground) -> bool:

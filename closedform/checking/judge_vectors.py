@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterable, Iterator, Sequence
 
 from flint import acb
 
@@ -121,7 +121,9 @@ def _vector(
             return Finding("holds up to scale", "A v = lambda v")
         chained = generalized or not claim.stated
         if chained and not image.is_zero and (shifted.power(ground.size) @ vector).is_zero:
-            return _in_chain(image, setting, ground)
+            finding = _in_chain(image, setting, ground, told=generalized)
+            if finding is not None:
+                return finding
     right = None
     for value in candidates:
         kernel = eigenvectors(ground, value)
@@ -137,20 +139,56 @@ def _vector(
     return Finding("fails", reason, right)
 
 
-def _in_chain(image: ExactMatrix, setting: Setting, ground: Ground) -> Finding:
-    """Tell how the image of a generalized eigenvector stands to the author's vector before it."""
+def _in_chain(
+    image: ExactMatrix, setting: Setting, ground: Ground, *, told: bool
+) -> Finding | None:
+    """Tell how the image of a generalized eigenvector stands to the author's vector before it.
+
+    None says that it is in no chain: a vector of which nothing is told has to be an eigenvector
+    unless a multiple of its image stands beside it, or what stands there is wrong.
+    """
     before = setting.author.last("generalized eigenvector") or setting.author.last("eigenvector")
+    if before is not None and any(
+        vector.shape == image.shape and (image - vector).is_zero
+        for vector in _vectors((before.claim,), setting, ground)
+    ):
+        return Finding("holds", "(A - lambda I) w = v")
+    if not told and not _is_beside(image, setting, ground):
+        return None
     if before is None:
         return Finding("holds up to scale", "a vector of a chain")
-    try:
-        vector = matrix_value(before.value, setting, ground)
-    except (NotJudgedError, NotElementaryError):
-        return Finding("holds up to scale", "a vector of a chain")
-    if vector.shape == image.shape and (image - vector).is_zero:
-        return Finding("holds", "(A - lambda I) w = v")
     return Finding(
         "holds up to scale", "a vector of a chain, whose image is not the vector before it"
     )
+
+
+def _is_beside(image: ExactMatrix, setting: Setting, ground: Ground) -> bool:
+    """Whether a multiple of a vector is stated before or later, or a wrong one before."""
+    entries = [entry for says in VECTORS for entry in setting.author.all(says)]
+    if any(entry.root is not None for entry in entries):
+        return True
+    claims = (*(entry.claim for entry in entries), *setting.later)
+    return any(
+        vector.shape == image.shape
+        and not vector.is_zero
+        and ExactMatrix(ground.field, (image.entries, vector.entries)).rank() == 1
+        for vector in _vectors(claims, setting, ground)
+    )
+
+
+def _vectors(claims: Iterable[Claim], setting: Setting, ground: Ground) -> Iterator[ExactMatrix]:
+    """Yield the vectors that claims state, as columns; what is none is passed over."""
+    for claim in claims:
+        if claim.says not in VECTORS or not claim.values:
+            continue
+        try:
+            vector = matrix_value(claim.values[-1], setting, ground)
+        except (NotJudgedError, NotElementaryError, ZeroDivisionError):
+            continue
+        yield vector if vector.shape[1] == 1 else vector.transposed
+
+
+VECTORS = ("eigenvector", "generalized eigenvector")
 
 
 def _eigenvalue_of(claim: Claim, setting: Setting, ground: Ground) -> Element | None:
