@@ -10,7 +10,14 @@ from rich.cells import cell_len, chop_cells
 
 from closedform.checking.verdict import CheckReport, LineVerdict, Word
 from closedform.cli.screen import Line, printable
-from closedform.document.checked_words import outcome, place_of, sentence, slip_words, tally
+from closedform.document.checked_words import (
+    claimed,
+    outcome,
+    place_of,
+    sentence,
+    slip_words,
+    tally,
+)
 from closedform.notation.written.plain_form import plain_written
 
 __all__ = ["check_line", "check_summary"]
@@ -69,7 +76,7 @@ def _table(report: CheckReport, room: int) -> Iterator[Line]:
         reason = _reason(verdict, room - NUMBER - GAP if below else last)
         columns = (
             [f"{verdict.line.number:>{NUMBER}}"],
-            _wrapped(verdict.says, says),
+            _wrapped(claimed(verdict), says),
             _wrapped(_word(verdict), VERDICT),
             [] if below else reason,
         )

@@ -11,6 +11,7 @@ from closedform.checking.verdict import CheckReport
 from closedform.document.checked_formulas import formula_of, right_of, statements_of, typed
 from closedform.document.checked_words import (
     MEANINGS,
+    claimed,
     counts,
     outcome,
     place_of,
@@ -113,6 +114,7 @@ def _environment(template: str | Path) -> Environment:
         "statements": statements_of,
         "right": right_of,
         "typed": typed,
+        "claimed": claimed,
         "place_of": place_of,
         "slip_words": slip_words,
         "sentence": sentence,

@@ -8,6 +8,7 @@ from closedform.checking.verdict import WORDS, CheckReport, LineVerdict, Slip, W
 
 __all__ = [
     "MEANINGS",
+    "claimed",
     "counts",
     "line_name",
     "outcome",
@@ -115,7 +116,16 @@ def sentence(text: str) -> str:
 
 def line_name(verdict: LineVerdict) -> str:
     """Return the name of a line in a report: its number and what it claims, if that is known."""
-    return f"line {verdict.line.number}" + (f": {verdict.says}" if verdict.says else "")
+    claim = claimed(verdict)
+    return f"line {verdict.line.number}" + (f": {claim}" if claim else "")
+
+
+def claimed(verdict: LineVerdict) -> str:
+    """Return what a line claims, and of what, where its author says so: eigenvector of -2."""
+    of = verdict.line.of.strip()
+    if not verdict.says or not of or of in verdict.says.split():
+        return verdict.says
+    return f"{verdict.says} of {of}"
 
 
 def slip_words(slip: Slip) -> str:
@@ -124,9 +134,9 @@ def slip_words(slip: Slip) -> str:
 
 
 def place_of(verdict: LineVerdict) -> str:
-    """Return where the line stands in its file: a key, or a line; and its label, if it has one."""
+    """Return where the line stands in its file: a line, or a key; and its label, if it has one."""
     place, label = verdict.line.place, verdict.line.label
-    where = place.key or ("" if place.line is None else f"line {place.line}")
+    where = place.key or "" if place.line is None else f"line {place.line}"
     return f"{where} ({label})".lstrip() if label else where
 
 

@@ -48,7 +48,8 @@ def test_the_report_says_what_was_found_where_and_what_is_right() -> None:
     for part in (
         "8 lines: 3 hold, 1 fails, 3 are carried and 1 was not read",
         r"\textbf{Line 4 fails; lines 5 to 7 are carried from it; line 8 was not read; the",
-        r"Two tanks (tanks.toml)",
+        r"Model & Two tanks",
+        "Model file & tanks.toml",
         "line 22 (eq:trace)",
         r"\checkedline{4}{eigenvalues}{\textcolor{wrong}{\textbf{fails}}}",
         r"\checkedline{6}{solution $x_{1}$}{\textcolor{wrong}{carried from line 4}}",

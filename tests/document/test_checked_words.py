@@ -2,12 +2,24 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import pytest
 
 from closedform.checking.claim import SourceLine
 from closedform.checking.verdict import WORDS, CheckReport, LineVerdict, Word
-from closedform.document.checked_words import MEANINGS, counts, outcome, sentence, tally
-from tests.document.checked_samples import CHECKED_SAMPLES, slipped
+from closedform.document.checked_words import (
+    MEANINGS,
+    claimed,
+    counts,
+    line_name,
+    outcome,
+    place_of,
+    sentence,
+    tally,
+)
+from closedform.errors import Place
+from tests.document.checked_samples import CHECKED_SAMPLES, slipped, sound
 
 
 def report(*found: Word | tuple[Word, int | None]) -> CheckReport:
@@ -80,3 +92,24 @@ SENTENCES = [
 @pytest.mark.parametrize(("remark", "said"), SENTENCES)
 def test_a_remark_becomes_a_sentence_and_names_keep_their_letters(remark: str, said: str) -> None:
     assert sentence(remark) == said
+
+
+def test_what_a_vector_is_of_is_told_once() -> None:
+    verdict = sound().lines[2]
+    of = replace(verdict, line=replace(verdict.line, of=" -2 "))
+    assert claimed(of) == "eigenvector of -2"
+    assert line_name(of) == "line 3: eigenvector of -2"
+    assert claimed(verdict) == verdict.says
+    value = sound().lines[3]
+    assert claimed(replace(value, line=replace(value.line, of="x1"))) == "value x1"
+    assert claimed(replace(of, says="")) == ""
+
+
+def test_a_place_is_a_line_where_that_is_known_and_else_a_key() -> None:
+    verdict = sound().lines[0]
+    keyed = replace(verdict.line, place=Place("a.toml", "claim[1].text", 7, 9))
+    assert place_of(replace(verdict, line=keyed)) == "line 7"
+    unplaced = replace(verdict.line, place=Place("a.toml", "claim[1].text"))
+    assert place_of(replace(verdict, line=unplaced)) == "claim[1].text"
+    labelled = replace(verdict.line, place=Place("a.tex"), label="eq:x")
+    assert place_of(replace(verdict, line=labelled)) == "(eq:x)"
