@@ -36,7 +36,7 @@ def read_line(line: SourceLine, facts: Facts) -> ReadLine:
     try:
         reading = read(line.text, facts.declared, place=line.place)
     except NotReadError as error:
-        return ReadLine(line, None, str(error))
+        return ReadLine(line, None, error.paragraph)
     of = _stated(line.of, facts) if line.says in VECTORS else None
     at = _stated(line.at, facts) if line.at else None
     return ReadLine(line, reading, "", of, at)

@@ -65,7 +65,12 @@ class PlacedError(InputError):
         self.place = place
 
     def __str__(self) -> str:
-        return shown(self.place, sentence(self._paragraph()))
+        return shown(self.place, self.paragraph)
+
+    @property
+    def paragraph(self) -> str:
+        """What is wrong and what to do about it, a sentence without the place."""
+        return sentence(self._paragraph())
 
     def _paragraph(self) -> str:
         """Return what is wrong and what to do about it, without the place; a full stop is added."""
