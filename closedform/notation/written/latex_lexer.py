@@ -43,6 +43,7 @@ _ENVIRONMENT = re.compile(r"[ \t]*\{([A-Za-z]+)\*?\}")
 _OPTION = re.compile(r"[ \t]*\[[^\]\[{}\\]*\]")
 _COMMENT = re.compile(r"%[^\n]*\n?[ \t]*")
 _KERN = re.compile(r"[ \t]*-?[0-9.]+[ \t]*[a-z]{2}")
+_BRACKET = re.compile(r"\s*(?:\\?[(|]|\[[^\]]*\](?!\s*\{))")
 _SPECIAL = frozenset("{}^_&'")
 _SUPERSCRIPTS = dict(zip("⁰¹²³⁴⁵⁶⁷⁸⁹", "0123456789", strict=True))
 _SUBSCRIPTS = dict(zip("₀₁₂₃₄₅₆₇₈₉", "0123456789", strict=True))
@@ -115,6 +116,8 @@ def _command(text: str, at: int, end: int, found: list[Raw]) -> int:
         size = _KERN.match(text, after, end)
         after = size.end() if size else after
         found.append(Raw("command", ",", at, after))
+    elif name == "qty" and _BRACKET.match(text, after, end):
+        pass  # brackets that grow, of the package physics; a quantity has braces
     elif name in VERBATIM:
         after = _verbatim(name, text, at, after, end, found)
     elif name not in ("(", ")", "[", "]"):  # these only bound a formula

@@ -9,6 +9,7 @@ from closedform.notation.written.latex_lexer import lexed
 from closedform.notation.written.latex_source import LatexSource
 from closedform.notation.written.names import Names
 from closedform.notation.written.passes import settled
+from closedform.notation.written.shorthand import spelled_out
 from closedform.notation.written.tree import Declared, Reading
 from closedform.notation.written.written_errors import (
     StopError,
@@ -63,7 +64,7 @@ def read_latex(text: str, declared: Declared, *, place: Place = NOWHERE) -> Read
         raise WrittenLengthError(place, len(text), LONGEST)
     try:
         names = Names(declared)
-        source = LatexSource(text, lexed(text), names)
+        source = LatexSource(text, spelled_out(lexed(text)), names)
         raw = source.sequence(0, len(source.raws))
         if not raw:
             raise StopError(UnexpectedPartError, 0, 0, "", "a formula")  # noqa: TRY301
