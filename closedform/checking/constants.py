@@ -1,32 +1,54 @@
-"""Constants of integration: which they are, and what they have to be."""
+"""Open constants of an author's formulas: which they are, and what they have to be."""
 
 from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import replace
 
-from closedform.algebra.elementary import Element
+from closedform.algebra.elementary import Element, NotElementaryError
+from closedform.checking.ansatz import fit
 from closedform.checking.author import Author, Entry
+from closedform.checking.claim import Claim
+from closedform.checking.compare import compare
+from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Value, exact
 from closedform.checking.ground import Ground
-from closedform.checking.judge_functions import constants_of, solution_value
-from closedform.checking.matrices import ExactMatrix, column
+from closedform.checking.judge_functions import (
+    constants_of,
+    free_residual,
+    laplace,
+    solution_value,
+)
+from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Setting
+from closedform.checking.written_back import written_back
+from closedform.notation.written.tree import Written
 
-__all__ = ["constant_values", "is_constant_of_integration"]
+__all__ = [
+    "constant_values",
+    "constants_put_in",
+    "is_constant_of_integration",
+    "opens",
+    "rests_on_constants",
+]
+
+OPEN = ("solution", "output", "particular solution", "transform", "exp A")
+"""Claims whose open constants the truth determines."""
+OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
 
 
 def is_constant_of_integration(name: str, setting: Setting) -> bool:
-    """Whether an earlier general solution of the author's has a constant of this name."""
+    """Whether an earlier line of the author's has an open constant of this name."""
     return any(name in names for _, names in _general(setting))
 
 
-def constant_values(name: str, setting: Setting, ground: Ground) -> list[Value]:
-    """Return what a constant has to be, for each general solution in which it stands.
+def opens(claim: Claim, setting: Setting) -> bool:
+    """Whether a claim is itself a formula with open constants, which it may use anew."""
+    return claim.says in OPEN and bool(constants_of(claim, setting))
 
-    The general solution and its derivatives have to have at the start the values that the
-    true solution has: linear equations for the constants.
-    """
+
+def constant_values(name: str, setting: Setting, ground: Ground) -> list[Value]:
+    """Return what a constant has to be, for each line in which it is open."""
     found: list[Value] = []
     for entry, names in _general(setting):
         if name in names:
@@ -36,14 +58,65 @@ def constant_values(name: str, setting: Setting, ground: Ground) -> list[Value]:
     return found
 
 
-def _general(setting: Setting) -> Iterator[tuple[Entry, list[str]]]:
-    """Yield the author's general solutions with their constants, the latest first.
+def constants_put_in(setting: Setting) -> Setting:
+    """Return the setting with values for the open constants that earlier lines determine."""
+    found: dict[str, Written] = {}
+    for entry, names in _general(setting):
+        solved = _solved(entry, names, setting, setting.ground)
+        for name, value in zip(names, solved or (), strict=False):
+            found.setdefault(name, written_back(value))
+    author = setting.author
+    return replace(setting, author=replace(author, definitions={**found, **author.definitions}))
+
+
+def rests_on_constants(claim: Claim, setting: Setting) -> int | None:
+    """Return the wrong line on which a solution rests, with the author's constants put in.
+
+    The author's general solution, with the values stated for its constants, and the right ones
+    where none is stated, has to be what the claim says.
+    """
+    author, ground = setting.author, setting.ground
+    for entry, names in _general(setting, wrong=True):
+        roots = [author.definition_roots[n] for n in names if n in author.definition_roots]
+        roots += [entry.root] if entry.root is not None else []
+        if not roots or entry.claim.subject != claim.subject:
+            continue
+        put = setting if entry.root is not None else constants_put_in(setting)
+        try:
+            if _says_the_same(claim, entry, setting, put, ground):
+                return min(roots)
+        except OUTSIDE:
+            continue
+    return None
+
+
+def _says_the_same(
+    claim: Claim, entry: Entry, setting: Setting, put: Setting, ground: Ground
+) -> bool:
+    """Whether a claim is what an earlier line gives, of the same function or its transform."""
+    scope = setting.scope_of(ground)
+    own, other = setting.opened(claim.values[-1]), put.opened(entry.value)
+    if entry.says == claim.says != "transform":
+        return compare(own, exact(other, scope), scope, ground).passes
+    variables = ("s", "p")
+    transformed = exact(setting.renamed(other, variables), scope)
+    if entry.says == claim.says:
+        return compare(setting.renamed(own, variables), transformed, scope, ground).passes
+    if entry.says == "transform" and claim.says in ("solution", "output"):
+        value = exact(own, scope)
+        if isinstance(value, Element) and isinstance(transformed, Element):
+            return (laplace(value) - transformed).is_zero
+    return False
+
+
+def _general(setting: Setting, *, wrong: bool = False) -> Iterator[tuple[Entry, list[str]]]:
+    """Yield the author's lines with open constants, and these, the latest first.
 
     Which constants are open in one is asked as if none had a value yet.
     """
     fresh = replace(setting, author=Author(kept=setting.author.kept))
     for entry in reversed(setting.author.entries):
-        if entry.says in ("solution", "output") and entry.root is None:
+        if entry.says in OPEN and entry.values and (wrong or entry.root is None):
             names = constants_of(entry.claim, fresh)
             if names:
                 yield entry, names
@@ -51,43 +124,33 @@ def _general(setting: Setting) -> Iterator[tuple[Entry, list[str]]]:
 
 def _solved(
     entry: Entry, names: list[str], setting: Setting, ground: Ground
-) -> list[Element] | None:
-    stretch = ground.stretches[0]
+) -> tuple[Element, ...] | None:
+    """Return the only values of open constants with which a line holds, None without such."""
+    try:
+        residual = _residual(entry, names, setting, ground)
+        found = fit(residual, names, ground, ground.stretches[0].start)
+    except OUTSIDE:
+        return None
+    return found.values if found is not None and found.unique else None
+
+
+def _residual(entry: Entry, names: list[str], setting: Setting, ground: Ground) -> Value:
+    """Return what has to vanish for all t, or all s, with the right constants."""
     scope = setting.scope_of(ground).with_symbols({n: ground.field.name(n) for n in names})
-    value = exact(entry.value, scope)
-    true = solution_value(entry.claim.subject, ground, stretch)
-    rows: list[list[Element]] = []
-    for mine, theirs in zip(_entries(value), _entries(true), strict=True):
-        one, other = mine, theirs
-        for _ in range(len(names)):
-            rows.append([(one - other).at(stretch.start)])
-            one, other = one.derivative(), other.derivative()
-    zero = dict.fromkeys(names, ground.field.zero)
-    equations, rest = [], []
-    for (residual,) in rows:
-        constant = residual.substituted(zero)
-        weights = [
-            residual.substituted({**zero, name: ground.field.one}) - constant for name in names
-        ]
-        equations.append(weights)
-        rest.append(-constant)
-    return _solution(ground, equations, rest)
-
-
-def _solution(
-    ground: Ground, equations: list[list[Element]], rest: list[Element]
-) -> list[Element] | None:
-    """Return the solution of linear equations, None if it is not unique."""
-    matrix = ExactMatrix(ground.field, tuple(map(tuple, equations)))
-    right = column(ground.field, rest)
-    normal = matrix.transposed @ matrix
-    if normal.rank() < len(equations[0]):
-        return None
-    found = normal.inverse() @ matrix.transposed @ right
-    if not (matrix @ found - right).is_zero:
-        return None
-    return list(found.entries)
-
-
-def _entries(value: Value) -> tuple[Element, ...]:
-    return value.entries if isinstance(value, ExactMatrix) else (value,)
+    if entry.says == "transform":
+        value = exact(setting.renamed(entry.value, ("s", "p")), scope)
+        true: Value = solution_value(entry.claim.subject, ground, ground.stretches[0])
+        true = true.mapped(laplace) if isinstance(true, ExactMatrix) else laplace(true)
+    else:
+        value = exact(entry.value, scope)
+        if entry.says == "exp A":
+            true = ground.transition
+        else:
+            true = solution_value(entry.claim.subject, ground, ground.stretches[0])
+    if isinstance(value, ExactMatrix) and isinstance(true, ExactMatrix):
+        difference: Value = value - true
+    elif isinstance(value, Element) and isinstance(true, Element):
+        difference = value - true
+    else:
+        raise NotJudgedError("a function stands where a column is wanted")
+    return free_residual(difference, ground) if entry.says == "particular solution" else difference

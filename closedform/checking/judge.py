@@ -12,6 +12,12 @@ from closedform.checking.balls import NoValueError
 from closedform.checking.claim import Claim, Group
 from closedform.checking.compare import has_decimals
 from closedform.checking.consequences import carried_from
+from closedform.checking.constants import (
+    constants_put_in,
+    is_constant_of_integration,
+    opens,
+    rests_on_constants,
+)
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.judge_functions import (
     judge_block_exponential,
@@ -43,6 +49,7 @@ from closedform.checking.judge_vectors import (
     judge_transformation,
 )
 from closedform.checking.left_sides import base_and_indices
+from closedform.checking.naming import used_names
 from closedform.checking.order import is_order, judge_order
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.signs import both_signs
@@ -98,6 +105,11 @@ def judge(claim: Claim, setting: Setting) -> Finding:
     judge_it = JUDGES.get(claim.says, judge_identity)
     if claim.says == "identity" and any(map(is_order, claim.statements)):
         judge_it = judge_order
+    names = used_names(claim) - setting.author.definitions.keys()
+    if any(is_constant_of_integration(name, setting) for name in names) and not opens(
+        claim, setting
+    ):
+        setting = constants_put_in(setting)
     try:
         try:
             return judge_it(claim, setting)
@@ -126,7 +138,11 @@ def judged(claim: Claim, setting: Setting) -> Judgement:
             reason = "the line that gives the angle leaves its quadrant open"
             return Judgement(claim, Finding("not read", reason))
     try:
-        root = carried_from(claim, setting) or _by_mended_names(claim, setting)
+        root = (
+            carried_from(claim, setting)
+            or rests_on_constants(claim, setting)
+            or _by_mended_names(claim, setting)
+        )
     except OUTSIDE:
         root = None
     if root is None:

@@ -2,15 +2,19 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import replace
 from fractions import Fraction
 from functools import partial
 from itertools import pairwise
 from typing import Protocol
 
+from flint import acb, arb
+
 from closedform.algebra.elementary import Element
+from closedform.checking.ansatz import Fit, fit, rank_of
 from closedform.checking.claim import Claim
+from closedform.checking.compare import has_decimals
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Scope, Value, applies, exact
 from closedform.checking.exponential import matrix_exponential
@@ -26,10 +30,21 @@ from closedform.checking.matrices import (
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.similar import is_block_form, is_similar
 from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Array, Jet, Power, Range, Symbol, Written, walk
+from closedform.notation.written.plain_form import plain_written
+from closedform.notation.written.tree import (
+    Array,
+    Jet,
+    Literal,
+    Power,
+    Range,
+    Symbol,
+    Written,
+    walk,
+)
 
 __all__ = [
     "constants_of",
+    "free_residual",
     "judge_block_exponential",
     "judge_equation",
     "judge_homogeneous",
@@ -39,6 +54,7 @@ __all__ = [
     "judge_steady",
     "judge_transform",
     "judge_transition",
+    "laplace",
     "solution_value",
 ]
 
@@ -53,6 +69,10 @@ def judge_transition(claim: Claim, setting: Setting) -> Finding:
         if isinstance(instant, ExactMatrix):
             raise NotJudgedError("a matrix stands where an instant is wanted")
         return ground.transition.mapped(lambda entry: entry.at(instant))
+
+    constants = constants_of(claim, setting)
+    if constants and claim.at is None:
+        return _open_member(claim, setting, constants, true, lambda member: member)
 
     def right(ground: Ground) -> Written | None:
         rows = ground.truth.transition
@@ -206,9 +226,13 @@ def constants_of(claim: Claim, setting: Setting) -> list[str]:
     facts = setting.ground.facts
     opened = [setting.opened(value) for value in claim.values]
     names = {n.name for tree in opened for n in walk(tree) if isinstance(n, Symbol)}
-    single = not any(isinstance(n, Array) for tree in opened for n in walk(tree))
+    single = claim.says not in OF_MATRICES and not any(
+        isinstance(n, Array) for tree in opened for n in walk(tree)
+    )
     raised = {n.name for tree in opened for n in _exponents(tree) if isinstance(n, Symbol)}
     unknown = names - facts.names - ((raised & {"A", "J"}) if single else {"A", "P", "J"})
+    if claim.says == "transform":
+        unknown -= {"s", "p", SPECTRAL}
     shaped = {name for name in unknown if name.rstrip("0123456789_") in CONSTANTS}
     return sorted(unknown) if unknown and unknown == shaped else []
 
@@ -222,6 +246,7 @@ def _exponents(tree: Written) -> Iterator[Written]:
 
 CONSTANTS = frozenset({"c", "C", "k", "K", "a", "A", "B", "b", "alpha", "beta", "D", "E", "F"})
 """Letters that constants of integration go by (common practice)."""
+OF_MATRICES = ("exp A", "resolvent")
 
 
 def _general(claim: Claim, setting: Setting, constants: list[str]) -> Finding:
@@ -254,19 +279,127 @@ def _modulo_free(claim: Claim, setting: Setting, *, whole: bool, constants: list
             scope = setting.scope_of(ground)
             scope = scope.with_symbols({c: ground.field.name(c) for c in constants})
             value = exact(opened, scope)
+            difference = value
             if whole:
-                value = _minus(value, solution_value(claim.subject, ground, stretch))
-            rest = _free_residual(value, ground)
-            if not rest.is_zero:
-                return Finding(
-                    "fails",
-                    "it does not satisfy the equations",
-                    _particular(claim, ground),
+                difference = _minus(value, solution_value(claim.subject, ground, stretch))
+            rest = free_residual(difference, ground)
+            if constants:
+                last = _with_constants(claim, constants, (value, difference, rest), ground, stretch)
+            elif rest.is_zero:
+                last = Finding("holds")
+            elif has_decimals(opened):
+                last = _rounded_part(claim, setting, stretch)
+            else:
+                last = Finding(
+                    "fails", "it does not satisfy the equations", _particular(claim, ground)
                 )
-            last = Finding("holds", notes=_count_note(constants))
+            if not last.passes:
+                return last
     if last is None:
         raise NotJudgedError("no function is given")
     return last
+
+
+def _with_constants(
+    claim: Claim,
+    constants: list[str],
+    found: tuple[Value, Value, Value],
+    ground: Ground,
+    stretch: Stretch,
+) -> Finding:
+    """Judge a function with open constants, less the true one, and put into the free equations.
+
+    A general solution satisfies the equations whatever they are, and contains the true one; a
+    free one has as many as it needs.  Any other is an ansatz, right if some values make it so.
+    """
+    value, difference, rest = found
+    start = stretch.start
+    if not rest.is_zero:
+        partly = claim.says == "particular solution"
+        fitted = fit(rest if partly else difference, constants, ground, start)
+        if fitted is None or claim.says == "homogeneous solution":
+            if _may_be_rounded(claim, value, rest, ground):
+                raise NotJudgedError("decimals beside open constants are not judged")
+            return Finding("fails", "it does not satisfy the equations", _particular(claim, ground))
+        return Finding("holds", notes=(_ansatz_note(constants, fitted),))
+    if claim.says == "homogeneous solution":
+        wanted = _freedom(claim.subject, ground)
+        if wanted is not None and rank_of(value, constants, ground, start) < wanted:
+            return Finding("fails", f"it has fewer than {wanted} independent constants")
+    elif claim.says != "particular solution" and fit(difference, constants, ground, start) is None:
+        return Finding("fails", "no constants give it the initial values")
+    return Finding("holds", notes=_count_note(constants))
+
+
+def _may_be_rounded(claim: Claim, value: Value, rest: Value, ground: Ground) -> bool:
+    """Whether the decimals of a claim could be why the equations leave a small rest.
+
+    That is so unless the rest is larger, against the terms of the equation, than the sum of all
+    relative errors, each twice what rounding makes.
+    """
+    literals = [n for v in claim.values for n in walk(v) if isinstance(n, Literal)]
+    errors = [n.last_place / n.value for n in literals if n.is_decimal and n.value]
+    if not errors:
+        return False
+    whole = sum((_size(part, ground) for part in _terms_of_equation(value, ground)), arb(0))
+    return not _size(rest, ground) > whole * (arb(sum(errors).numerator) / sum(errors).denominator)
+
+
+def _terms_of_equation(value: Value, ground: Ground) -> Iterator[Value]:
+    """Yield the terms of which `free_residual` is the sum."""
+    if isinstance(value, ExactMatrix):
+        yield value.mapped(Element.derivative)
+        yield ground.matrix @ value
+        return
+    derivative = value
+    for coefficient in characteristic_coefficients(ground.matrix):
+        yield coefficient * derivative
+        derivative = derivative.derivative()
+
+
+def _size(value: Value, ground: Ground) -> arb:
+    """Return the size of a function at an instant, open constants being 1."""
+    total, known = arb(0), ground.sampled()
+    for entry in value.entries if isinstance(value, ExactMatrix) else (value,):
+        names = {name: known.get(name, arb(1)) for name in entry.free_names}
+        total += abs(entry.enclosure(acb(arb(3) / 7), names))
+    return total
+
+
+def _ansatz_note(constants: list[str], fitted: Fit) -> str:
+    values = [
+        f"{n} = {plain_written(written_back(v))}"
+        for n, v in zip(constants, fitted.values, strict=True)
+    ]
+    return f"an ansatz, which holds for {', '.join(values)}"
+
+
+def _freedom(subject: str, ground: Ground) -> int | None:
+    """Return how many constants the free motion of a state has: the rank of c, cA, cA^2, ..."""
+    if subject == "vector" or ground.facts.has_vector(subject):
+        return ground.size
+    if subject not in ground.truth.states:
+        return None
+    place = ground.truth.states.index(subject)
+    row = ExactMatrix(ground.field, (identity(ground.field, ground.size).rows[place],))
+    rows = []
+    for _ in range(ground.size):
+        rows.append(row.rows[0])
+        row = row @ ground.matrix
+    return ExactMatrix(ground.field, tuple(rows)).rank()
+
+
+def _rounded_part(claim: Claim, setting: Setting, stretch: Stretch) -> Finding:
+    """Judge a part of the solution with decimals against the one that the model has."""
+    pieces = setting.ground.truth.particular.get(claim.subject, ())
+    if claim.says != "particular solution" or len(pieces) != 1:
+        raise NotJudgedError("a part of the solution with decimals is not judged here")
+    inside = replace(setting, ground=setting.ground.within(stretch))
+
+    def true(ground: Ground) -> Value:
+        return ground.number(ground.truth.particular[claim.subject][0].formula)
+
+    return held_against(claim, inside, true, lambda ground: written_back(true(ground)))
 
 
 def _count_note(constants: list[str]) -> tuple[str, ...]:
@@ -284,7 +417,11 @@ def _minus(one: Value, other: Value) -> Value:
     raise NotJudgedError("a function stands where a column is wanted, or the other way round")
 
 
-def _free_residual(value: Value, ground: Ground) -> Value:
+def free_residual(value: Value, ground: Ground) -> Value:
+    """Return a function put into the free equations: zero if it is a free response.
+
+    Of a column it is x' - A x, of a single function p(d/dt) x for the characteristic polynomial.
+    """
     if isinstance(value, ExactMatrix):
         return value.mapped(Element.derivative) - ground.matrix @ value
     total, derivative = ground.field.zero, value
@@ -349,13 +486,55 @@ def judge_transform(claim: Claim, setting: Setting) -> Finding:
     def prepare(member: Written) -> Written:
         known = ground.facts.names
         names = {n.name for n in walk(member) if isinstance(n, Symbol)} - known
+        names -= set(constants)
         if len(names) != 1:
             raise NotJudgedError("it is not told which name is the variable of the transform")
         return setting.renamed(member, names)
 
+    constants = constants_of(claim, setting)
+    closed = tuple(v for v in claim.values if not _has_names(setting.opened(v), constants))
+    if len(closed) < len(claim.values):
+        found = _open_member(claim, setting, constants, true, prepare)
+        if not found.passes or not closed:
+            return found
     return held_against(
-        claim, setting, true, lambda g: written_back(true(g), TRANSFORM_NAMES), prepare=prepare
+        claim,
+        setting,
+        true,
+        lambda g: written_back(true(g), TRANSFORM_NAMES),
+        prepare=prepare,
+        values=closed,
     )
+
+
+def _has_names(tree: Written, names: Sequence[str]) -> bool:
+    return any(isinstance(node, Symbol) and node.name in names for node in walk(tree))
+
+
+def _open_member(
+    claim: Claim,
+    setting: Setting,
+    constants: Sequence[str],
+    true: Callable[[Ground], Value],
+    prepare: Callable[[Written], Written],
+) -> Finding:
+    """Judge the members with open constants: some values of these have to make them true."""
+    notes: tuple[str, ...] = ()
+    for member in claim.values:
+        opened = setting.opened(member)
+        if not _has_names(opened, constants):
+            continue
+        opened = prepare(opened)
+        ground = setting.ground_for(opened)
+        scope = setting.scope_of(ground)
+        scope = scope.with_symbols({c: ground.field.name(c) for c in constants})
+        difference = _minus(exact(opened, scope), true(ground))
+        fitted = fit(difference, constants, ground, ground.stretches[0].start)
+        if fitted is None:
+            reason = f"no {', '.join(constants)} make it true"
+            return Finding("fails", reason, written_back(true(ground), TRANSFORM_NAMES))
+        notes = (_ansatz_note(list(constants), fitted),)
+    return Finding("holds", notes=notes)
 
 
 TRANSFORM_NAMES = {SPECTRAL: "s"}

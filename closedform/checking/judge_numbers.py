@@ -81,7 +81,8 @@ def _nearest(failed: list[Finding], ground: Ground) -> int:
             return 0
         if not isinstance(value, Element) or not isinstance(true, Element):
             return 0
-        off = abs((value - true).enclosure(acb(0), ground.sampled()))
+        names = ground.sampled()
+        off = abs(value.enclosure(acb(0), names) - true.enclosure(acb(0), names))
         if least is None or off < least:
             best, least = k, off
     return best

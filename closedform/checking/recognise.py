@@ -126,6 +126,8 @@ def _left(statement: Statement, facts: Facts) -> Left | None:
     left = left_of(first, facts) if rest else None
     if left is not None and left.says in MATRICES and not any(map(_is_matrix, rest)):
         left = None
+    if left is not None and left.says == "eigenvalues" and _in_time(rest, facts):
+        left = None
     if left is not None and left.says == "solution" and _is_equation(first, rest, facts):
         left = None
     if left is None and _is_vector_name(first, rest):
@@ -249,6 +251,11 @@ def _has_jets(members: Sequence[Written], facts: Facts) -> bool:
         for member in members
         for node in walk(member)
     )
+
+
+def _in_time(members: Sequence[Written], facts: Facts) -> bool:
+    """Whether the time stands in formulas, as in those of Putzer's method, of no eigenvalue."""
+    return any(Symbol(facts.time) in walk(member) for member in members)
 
 
 def _is_equation(first: Written, rest: Sequence[Written], facts: Facts) -> bool:
