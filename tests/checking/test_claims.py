@@ -264,3 +264,15 @@ def test_a_case_is_chosen_by_a_condition() -> None:
     line = r"x(t)=x_0\left(1+\frac{c}{2m}t\right)e^{-\frac{c}{2m}t}"
     assert held(keys, line, case="c^2 = 4*k*m")[0].passes
     assert held(keys, line, case="c^2 < 4*k*m")[0].verdict == "fails"
+
+
+@pytest.mark.parametrize(
+    ("shown", "passes"),
+    [("1163", True), ("1160", True), ("1200", False), ("1150", False), ("1162", False)],
+)
+def test_zeros_at_the_end_of_a_whole_number_need_not_be_significant(
+    shown: str, *, passes: bool
+) -> None:
+    keys = {"states": ["n"], "matrix": [["-1"]], "initial": ["3162"]}
+    (found,) = held(keys, rf"n(1)\approx{shown}")
+    assert found.passes == passes, found

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Iterator
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from typing import Literal as OneOf
 
@@ -17,6 +18,7 @@ Rounding = OneOf["right", "truncated", "last place", "off"]
 _MORE_DIGITS = 4
 _SMALLEST_FIXED = -5
 _LAST_PLACES = 2
+FEWEST_DIGITS = 3
 
 
 @dataclass(frozen=True, slots=True)
@@ -51,6 +53,11 @@ def judged(literal: Literal, ball: arb, pair: int = 0) -> Judged:
     be small: what it holds by chance is not told from what is so.
     Raises:  UnsettledError if the ball is too wide for the digits shown.
     """
+    for place in _places(literal):
+        units = ball / ball_of(place)
+        if literal.value / place in _rounded(units):
+            literal = replace(literal, last_place=place)
+            break
     units = ball / ball_of(literal.last_place)
     rounded = _rounded(units)
     printed = int(literal.value / literal.last_place)
@@ -66,6 +73,23 @@ def judged(literal: Literal, ball: arb, pair: int = 0) -> Judged:
     exact, ends = shown_exactly(ball, literal.last_place / 10**_MORE_DIGITS)
     correct = decimal_text(rounded[0], literal.last_place)
     return Judged(literal, ball, verdict, correct, exact, ends, pair)
+
+
+def _places(literal: Literal) -> Iterator[Fraction]:
+    """Yield what a unit of the last significant digit may be worth.
+
+    Zeros at the end of a whole number need not be significant (ISO 80000-1, annex B); three
+    digits are taken to be at least: 1160 may stand for 1162.5, but 1200 not for 1234.
+    """
+    yield literal.last_place
+    place = literal.last_place
+    while (
+        not literal.is_decimal
+        and literal.value % (10 * place) == 0
+        and literal.value >= 10 ** (FEWEST_DIGITS) * place
+    ):
+        place *= 10
+        yield place
 
 
 def shown_exactly(ball: arb, last_place: Fraction) -> tuple[str, bool]:
