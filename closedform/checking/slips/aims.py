@@ -18,7 +18,7 @@ from closedform.checking.judge_functions import solution_value
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips.measuring import real, size
-from closedform.checking.slips.trial import BITS, Point, Trial
+from closedform.checking.slips.trial import BITS, SPECTRAL_SAMPLE, Point, Trial
 from closedform.notation.written.tree import Jet, Symbol, Written, walk
 
 __all__ = ["aimed", "opened_stretches", "true_value"]
@@ -33,7 +33,6 @@ PROPERTIES = frozenset(
     }
 )
 """Kinds that are judged by a property, which balls do not tell beforehand."""
-SPECTRAL_SAMPLE = Fraction(17, 13)
 
 
 def aimed(claim: Claim, finding: Finding, setting: Setting) -> Iterator[Trial]:
@@ -46,6 +45,8 @@ def aimed(claim: Claim, finding: Finding, setting: Setting) -> Iterator[Trial]:
         trial = Trial(claim, setting, ground, group, tree, kept, leads, right=finding.right)
         if claim.says == "eigenvalues":
             yield replace(trial, roots=_roots(ground))
+        elif claim.says in ("J", "real form"):
+            yield replace(trial, invariant=_characteristic(ground))
         elif claim.says in PROPERTIES:
             yield trial
         else:
@@ -101,6 +102,13 @@ def _roots(ground: Ground) -> tuple[acb, ...]:
     with ctx.workprec(BITS):
         names = ground.sampled()
         return tuple(value.enclosure(acb(0), names) for value in ground.eigenvalues)
+
+
+def _characteristic(ground: Ground) -> acb:
+    """Return det(z I - A) at the sample z."""
+    with ctx.workprec(BITS):
+        names = ground.sampled() | {SPECTRAL: real(SPECTRAL_SAMPLE)}
+        return ground.characteristic.enclosure(acb(0), names)
 
 
 def _held(trial: Trial, finding: Finding) -> Trial:

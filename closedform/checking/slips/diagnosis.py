@@ -21,7 +21,9 @@ from closedform.checking.slips.edits import (
 )
 from closedform.checking.slips.factors import constants, factors, left_out, normalised
 from closedform.checking.slips.lost_factors import (
+    extra_names,
     inverted,
+    missing_names,
     missing_times,
     missing_waves,
     other_arguments,
@@ -85,6 +87,8 @@ LAST: tuple[Source, ...] = (
     root_numbers,
     one_number,
     other_arguments,
+    extra_names,
+    missing_names,
     left_out,
     extra_terms,
     factors,

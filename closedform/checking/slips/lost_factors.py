@@ -6,7 +6,14 @@ from collections.abc import Iterator
 
 from closedform.algebra.elementary import Element
 from closedform.checking.slips import names
-from closedform.checking.slips.making import contains, exponent_of, exponential, over, times
+from closedform.checking.slips.making import (
+    contains,
+    exponent_of,
+    exponential,
+    over,
+    times,
+    without,
+)
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed, wave_above
 from closedform.checking.written_back import written_back
@@ -15,6 +22,7 @@ from closedform.notation.written.tree import (
     Apply,
     Negation,
     Power,
+    Product,
     Quotient,
     Sum,
     Symbol,
@@ -22,8 +30,16 @@ from closedform.notation.written.tree import (
     walk,
 )
 
-__all__ = ["inverted", "missing_times", "missing_waves", "other_arguments"]
+__all__ = [
+    "extra_names",
+    "inverted",
+    "missing_names",
+    "missing_times",
+    "missing_waves",
+    "other_arguments",
+]
 
+MOST_NAMES = 6
 WAVES = ("sin", "cos", "sinh", "cosh")
 
 
@@ -65,6 +81,38 @@ def _is_wave(node: Written) -> bool:
     if isinstance(node, Power):
         return node.base == EULER
     return isinstance(node, Apply) and node.function in WAVES
+
+
+def missing_names(trial: Trial) -> Iterator[Candidate]:
+    """Yield the formula with a parameter, or the variable, as a factor more, or divided by one."""
+    known = [*trial.setting.ground.truth.parameters][:MOST_NAMES]
+    if trial.claim.says == "characteristic polynomial":
+        known += sorted(_strange(trial))
+    for spot in trial.spots():
+        node, wave = spot.node, wave_above(spot)
+        whole = spot.path == trial.start or isinstance(spot.outer, Sum | Negation | Apply)
+        is_term = whole or (wave == "exp" and not isinstance(spot.outer, Product))
+        for name in known if is_term and not isinstance(node, Negation) else ():
+            for new in (times(Symbol(name), node), over(node, Symbol(name))):
+                where = placed(trial, spot, f"{part_text(node)}, {name}")
+                yield Candidate(names.FACTOR_LEFT_OUT, where, trial.changed(spot, new))
+
+
+def extra_names(trial: Trial) -> Iterator[Candidate]:
+    """Yield the formula with one factor less."""
+    for spot in trial.spots():
+        if isinstance(spot.node, Product):
+            for k, factor in enumerate(spot.node.factors):
+                if isinstance(factor, Symbol | Power):
+                    where = placed(trial, spot, part_text(factor))
+                    new = trial.changed(spot, without(spot.node.factors, k))
+                    yield Candidate(names.FACTOR_TOO_MANY, where, new)
+
+
+def _strange(trial: Trial) -> set[str]:
+    """Return the names that the model does not explain."""
+    found = {n.name for n in walk(trial.setting.opened(trial.tree)) if isinstance(n, Symbol)}
+    return found - trial.ground.facts.names
 
 
 def other_arguments(trial: Trial) -> Iterator[Candidate]:

@@ -115,6 +115,8 @@ def rearranged(trial: Trial) -> Iterator[Candidate]:
 
 
 Rows = tuple[tuple[Written, ...], ...]
+LARGEST = 16
+"""Matrices of so many entries are tried with two of them exchanged."""
 
 
 def _orders(trial: Trial, rows: Rows) -> Iterator[tuple[str, str, Rows]]:
@@ -134,7 +136,7 @@ def _orders(trial: Trial, rows: Rows) -> Iterator[tuple[str, str, Rows]]:
             yield names.ROWS, f"rows {i + 1} and {j + 1}", _exchanged(rows, i, j)
     flat = [(i, j) for i in range(height) for j in range(width)]
     for one, two in combinations(flat, 2):
-        if rows[one[0]][one[1]] == rows[two[0]][two[1]] or len(flat) > 9:
+        if rows[one[0]][one[1]] == rows[two[0]][two[1]] or len(flat) > LARGEST:
             continue
         where = f"entries {one[0] + 1, one[1] + 1} and {two[0] + 1, two[1] + 1}"
         places = {one: two, two: one}

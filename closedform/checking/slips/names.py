@@ -108,6 +108,8 @@ FRACTION = "fraction upside down"
 FACTOR_TWO = "factor 2"
 FACTOR = "overall factor"
 MISSING_WAVE = "missing exponential or wave"
+FACTOR_LEFT_OUT = "factor left out"
+FACTOR_TOO_MANY = "factor too many"
 TERM_LEFT_OUT = "term left out"
 TERM_TOO_MANY = "term too many"
 
@@ -215,6 +217,8 @@ MEANINGS: dict[str, str] = {
     FACTOR_TWO: "The number is twice or half of what it ought to be.",
     FACTOR: "The whole right side is off by a factor.",
     MISSING_WAVE: "A term lacks the exponential, sine or cosine that goes with it.",
+    FACTOR_LEFT_OUT: "A term or an argument lacks a parameter, or is not divided by one.",
+    FACTOR_TOO_MANY: "A term has a factor that it ought not to have.",
     TERM_LEFT_OUT: "A term of the sum is missing.",
     TERM_TOO_MANY: "A term stands in the sum that ought not to be there.",
     ROUNDING: "The last digit shown is not the one to which the value rounds.",

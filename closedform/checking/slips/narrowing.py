@@ -23,6 +23,8 @@ def narrowed(trial: Trial) -> Trial:
         return trial
     wrong = wrong_entries(trial, shape)
     arrays = [spot for spot in trial.spots() if isinstance(spot.node, Array)]
+    if len(wrong) > 1 and len(arrays) == 1:
+        return replace(trial, array=arrays[0].path)
     if len(wrong) != 1 or len(arrays) != 1:
         return trial
     (i, j), array = wrong[0], arrays[0]

@@ -50,7 +50,7 @@ def one_number(trial: Trial) -> Iterator[Candidate]:
 
 def same_number(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with a number replaced wherever it stands."""
-    literals = [s.node for s in trial.spots() if isinstance(s.node, Literal)]
+    literals = [n for n in walk(trial.tree) if isinstance(n, Literal)]
     for literal in dict.fromkeys(literals) if trial.points else ():
         if literals.count(literal) > 1:
             for one in solved(trial, _everywhere(trial, literal)):

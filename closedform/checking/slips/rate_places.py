@@ -10,7 +10,7 @@ from flint import acb, arb, ctx
 from closedform.checking.balls import NoValueError, enclose_written
 from closedform.checking.slips.making import ONE, contains, exponent_of, times
 from closedform.checking.slips.solving import Place
-from closedform.checking.slips.spots import Spot
+from closedform.checking.slips.spots import Spot, spots
 from closedform.checking.slips.trial import BITS, Trial
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (
@@ -35,7 +35,7 @@ WAVES = ("sin", "cos", "sinh", "cosh", "tan")
 
 def rate_places(trial: Trial) -> Iterator[Place]:
     """Yield the rates of exponentials and waves, equal ones together, then each by itself."""
-    found = [(spot, wave) for spot in trial.spots() if (wave := _wave(spot.node)) is not None]
+    found = [(spot, wave) for spot in spots(trial.tree) if (wave := _wave(spot.node)) is not None]
     waves = [wave for _, wave in found]
     for wave in dict.fromkeys(waves):
         yield from _place(trial, wave, None)

@@ -19,6 +19,7 @@ from closedform.checking.slips.trial import Candidate, Point, Trial
 from closedform.checking.verdict import Slip
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (
+    IMAGINARY,
     Listing,
     Literal,
     PlusMinus,
@@ -125,10 +126,24 @@ def root_numbers(trial: Trial) -> Iterator[Candidate]:
     for root in trial.roots:
         point = Point(trial.names, (root,))
         inner = replace(trial, tree=first, points=(point,), roots=())
-        for spot in list(trial.spots()):
-            if not isinstance(spot.node, Literal):
-                continue
-            yield from _root_number(trial, inner, spot)
+        for spot in trial.spots():
+            if isinstance(spot.node, Literal):
+                yield from _root_number(trial, inner, spot)
+            elif spot.node == IMAGINARY:
+                yield from _root_factor(trial, inner, spot)
+
+
+def _root_factor(trial: Trial, inner: Trial, spot: Spot) -> Iterator[Candidate]:
+    """Yield the formula with a factor before the imaginary unit."""
+
+    def tree(new: Written) -> Written:
+        whole = trial.changed(spot, times(new, spot.node))
+        return changed(whole, lambda n: n.operand if isinstance(n, PlusMinus) else None)
+
+    for one in solved(inner, Place("term", "", Fraction(1), tree)):
+        where = f"a factor {plain_written(one.written)} is missing"
+        new = trial.changed(spot, times(one.written, spot.node))
+        yield Candidate(names.LIST_FACTOR, where, new)
 
 
 def _root_number(trial: Trial, inner: Trial, spot: Spot) -> Iterator[Candidate]:

@@ -10,7 +10,16 @@ from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed
 from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Apply, Negation, Product, Sum, Symbol, Written, changed
+from closedform.notation.written.tree import (
+    Apply,
+    Negation,
+    Product,
+    Sum,
+    Symbol,
+    Written,
+    changed,
+    walk,
+)
 
 __all__ = ["delays", "other_names"]
 
@@ -65,7 +74,7 @@ def other_names(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with another name of a number in one place, or everywhere."""
     setting = trial.setting
     known = [*setting.ground.truth.parameters, *setting.author.definitions][:MOST_NAMES]
-    used = {s.node.name for s in trial.spots() if isinstance(s.node, Symbol)} & set(known)
+    used = {n.name for n in walk(trial.tree) if isinstance(n, Symbol)} & set(known)
     for spot in trial.spots():
         if isinstance(spot.node, Symbol) and spot.node.name in known:
             for name in known:

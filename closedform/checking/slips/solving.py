@@ -153,7 +153,7 @@ def _root(trial: Trial, place: Place) -> acb | None:
 
 
 def _root_from(trial: Trial, place: Place, start: Fraction) -> acb | None:
-    tree = place.tree(Symbol(SOUGHT))
+    tree = trial.setting.opened(place.tree(Symbol(SOUGHT)))
     first = acb(real(start))
     step = (size(first) / 64).max(arb(1) / 64 if start == 0 else arb(0))
     best: tuple[int, int] | None = None
@@ -195,12 +195,12 @@ def _secant(trial: Trial, tree: Written, at: tuple[int, int], x: acb, y: acb) ->
 
 def _values(trial: Trial, tree: Written, value: acb, at: int) -> tuple[acb, ...] | None:
     point = trial.points[at]
-    found = trial.value(tree, replace(point, names={**point.names, SOUGHT: value}))
+    found = trial.value_opened(tree, replace(point, names={**point.names, SOUGHT: value}))
     return None if found is None else tuple(entry.mid() for entry in found)
 
 
 def _fits(trial: Trial, place: Place, value: acb) -> bool:
-    tree = place.tree(Symbol(SOUGHT))
+    tree = trial.setting.opened(place.tree(Symbol(SOUGHT)))
     for k, point in enumerate(trial.points):
         found = _values(trial, tree, value, k)
         limit = Fraction(1, 40) if trial.loose else Fraction(1, 10**11)

@@ -164,10 +164,19 @@ def _entry_candidate(trial: Trial, i: int, j: int, value: Element) -> Iterator[C
             place = (j, i)
         if place[0] >= len(rows) or place[1] >= len(rows[0]):
             continue
-        old, new = rows[place[0]][place[1]], written_back(value)
+        front = _front(trial, spot)
+        if front is None or front.is_zero:
+            continue
+        old, new = rows[place[0]][place[1]], written_back(value / front)
         name = names.SIGN_ENTRY if negated(old) == new else names.ENTRY
         where = f"entry {i + 1, j + 1}: {plain_written(old)} ought to be {plain_written(new)}"
         yield Candidate(name, where, trial.changed(spot, _with(rows, {place: new})))
+
+
+def _front(trial: Trial, spot: Spot) -> Element | None:
+    """Return the factor in front of an array."""
+    value = trial.setting.value(trial.changed(spot, ONE), trial.ground)
+    return value if isinstance(value, Element) else None
 
 
 def _cleared(matrix: ExactMatrix, i: int, j: int) -> ExactMatrix:

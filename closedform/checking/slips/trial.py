@@ -6,7 +6,7 @@ from collections.abc import Callable, Iterator
 from dataclasses import dataclass, field, replace
 from fractions import Fraction
 
-from flint import acb, ctx
+from flint import acb, acb_mat, arb, ctx
 
 from closedform.algebra.elementary import NotElementaryError
 from closedform.checking.balls import NoValueError, enclose_matrix, enclose_written
@@ -23,14 +23,15 @@ from closedform.checking.slips.measuring import distance, largest, real, size
 from closedform.checking.slips.spots import Spot, Step, put, spots
 from closedform.notation.written.tree import Listing, Written
 
-__all__ = ["BITS", "EXACTLY", "Candidate", "Effort", "Point", "Trial", "Values"]
+__all__ = ["BITS", "EXACTLY", "SPECTRAL_SAMPLE", "Candidate", "Effort", "Point", "Trial", "Values"]
 
 BITS = 96
 MOST_TRIED = 700
 MOST_JUDGED = 24
-MOST_JUDGED_ONLY = 90
+MOST_JUDGED_ONLY = 60
 EXACTLY = Fraction(1, 10**12)
 ROUGHLY = Fraction(1, 40)
+SPECTRAL_SAMPLE = Fraction(17, 13)
 CLOSER = Fraction(2, 5)
 """With decimals a candidate has to be this much closer to the truth than what was written."""
 OUTSIDE = (NoValueError, NotElementaryError, ArithmeticError)
@@ -91,6 +92,10 @@ class Trial:
     effort: Effort = field(default_factory=Effort)
     true: Value | None = None
     right: Written | None = None
+    array: tuple[Step, ...] | None = None
+    """The way to an array of which several entries are wrong."""
+    invariant: acb | None = None
+    """For J, what det(z I - J) is at a sample."""
 
     @property
     def shape(self) -> tuple[int, int]:
@@ -139,12 +144,16 @@ class Trial:
     @property
     def spent(self) -> bool:
         """Whether enough was tried."""
-        most = MOST_JUDGED if self.points or self.roots else MOST_JUDGED_ONLY
+        most = MOST_JUDGED if self.points or self.roots or self.invariant else MOST_JUDGED_ONLY
         return len(self.effort.seen) >= MOST_TRIED or self.effort.judged >= most
 
     def spots(self) -> Iterator[Spot]:
-        """Yield the places at which it may be changed."""
-        return (s for s in spots(self.tree) if s.path[: len(self.start)] == self.start)
+        """Yield the places at which it may be changed: not in one of several wrong entries."""
+        for spot in spots(self.tree):
+            entered = self.array is not None and len(spot.path) > len(self.array)
+            hidden = entered and spot.path[: len(self.array or ())] == self.array
+            if spot.path[: len(self.start)] == self.start and not hidden:
+                yield spot
 
     def changed(self, spot: Spot, new: Written) -> Written:
         """Return it with another part at a place."""
@@ -172,41 +181,65 @@ class Trial:
 
     def near(self, tree: Written) -> bool:
         """Whether a formula is the true one as far as balls tell."""
-        if self.roots:
-            return self._near_roots(tree)
-        if not self.points:
-            return True
         with ctx.workprec(BITS):
-            return all(self._near_at(tree, k) for k in range(len(self.points)))
+            if self.roots:
+                return self._near_roots(tree)
+            if self.invariant is not None:
+                return self._near_invariant(tree, self.invariant)
+            return self._nearer(tree) if self.loose else self._is_there(tree)
 
-    def _near_at(self, tree: Written, at: int) -> bool:
-        point = self.points[at]
-        found = self.value(tree, point)
-        if found is None or len(found) != len(point.true):
+    def _is_there(self, tree: Written) -> bool:
+        """Whether a formula without decimals has the true value at all points."""
+        for point in self.points:
+            found = self.value(tree, point)
+            if found is None or len(found) != len(point.true):
+                return False
+            scale = largest(point.true).max(largest(found))
+            if not distance(found, point.true) <= scale * real(EXACTLY):
+                return False
+        return True
+
+    def _nearer(self, tree: Written) -> bool:
+        """Whether a formula with decimals is near the true value, and nearer than what stands."""
+        far, before = arb(0), arb(0)
+        for point in self.points:
+            found, own = self.value(tree, point), self.value(self.tree, point)
+            if found is None or len(found) != len(point.true):
+                return False
+            scale = largest(point.true) + arb(1) / 10**30
+            off = distance(found, point.true) / scale
+            if not off <= real(ROUGHLY):
+                return False
+            far = far.max(off)
+            before = before.max(distance(own, point.true) / scale if own else arb(1))
+        return not self.points or bool(far <= before * real(CLOSER))
+
+    def _near_invariant(self, tree: Written, true: acb) -> bool:
+        """Whether det(z I - J) is the true one at a sample z."""
+        try:
+            grid = enclose_matrix(self.setting.opened(tree), self.names)
+        except OUTSIDE:
             return False
-        scale = largest(point.true)
-        if not self.loose:
-            scale = scale.max(largest(found))
-            return all(
-                size(a - b) <= scale * real(EXACTLY) for a, b in zip(found, point.true, strict=True)
-            )
-        own = self.value(self.tree, point)
-        limit = scale * real(ROUGHLY)
-        if own is not None and len(own) == len(found):
-            limit = limit.min(distance(own, point.true) * real(CLOSER))
-        return bool(distance(found, point.true) <= limit)
+        if len(grid) != len(grid[0]):
+            return False
+        z = acb(real(SPECTRAL_SAMPLE))
+        rows = [
+            [(z if i == j else acb(0)) - e for j, e in enumerate(r)] for i, r in enumerate(grid)
+        ]
+        found = acb_mat(rows).det()
+        limit = real(ROUGHLY if self.loose else EXACTLY)
+        return bool(size(found - true) <= limit * size(true).max(size(found)))
 
     def _near_roots(self, tree: Written) -> bool:
-        with ctx.workprec(BITS):
-            for form in _listed(self.setting.opened(tree)):
-                try:
-                    value = enclose_written(form, self.names)
-                except OUTSIDE:
-                    return False
-                near = min((size(value - root) for root in self.roots), key=lambda r: r)
-                limit = real(ROUGHLY if self.loose else EXACTLY)
-                if not near <= limit * size(value).max(largest(self.roots)):
-                    return False
+        for form in _listed(self.setting.opened(tree)):
+            try:
+                value = enclose_written(form, self.names)
+            except OUTSIDE:
+                return False
+            near = min((size(value - root) for root in self.roots), key=lambda r: r)
+            limit = real(ROUGHLY if self.loose else EXACTLY)
+            if not near <= limit * size(value).max(largest(self.roots)):
+                return False
         return True
 
     @property
@@ -218,7 +251,10 @@ class Trial:
 
     def value(self, tree: Written, point: Point) -> tuple[acb, ...] | None:
         """Return the entries of a formula at a point; None if it has none there."""
-        opened = self.setting.opened(tree)
+        return self.value_opened(self.setting.opened(tree), point)
+
+    def value_opened(self, opened: Written, point: Point) -> tuple[acb, ...] | None:
+        """Return the same of a formula in which the author's names are replaced."""
         try:
             if len(point.true) == 1:
                 found: tuple[acb, ...] = (enclose_written(opened, point.names),)

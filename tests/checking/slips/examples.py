@@ -239,4 +239,9 @@ EXAMPLES: tuple[tuple[str, str, tuple[Line, ...]], ...] = (
         "switched",
         ("x(t) = exp(-2*t) + 6*(1 - exp(-2*(t - 1)))*step(t - 1)",),
     ),
+    (names.FACTOR_LEFT_OUT, "daughter", ("n_1(t) = N*exp(-t)",)),
+    (names.FACTOR_LEFT_OUT, "daughter", ("n_2(t) = N*(exp(-k_1*t) - exp(-k_2*t))/(k_2 - k_1)",)),
+    (names.FACTOR_TOO_MANY, "daughter", ("n_1(t) = N*k_2*exp(-k_1*t)",)),
+    (names.SIGN_TERM, "daughter", ("n_2(t) = k_1*N*(exp(-k_1*t) - exp(-k_2*t))/(k_2 + k_1)",)),
+    (names.OTHER_NAME, "daughter", ("n_1(t) = N*exp(-k_2*t)",)),
 )

@@ -123,6 +123,17 @@ MODELS: dict[str, dict[str, Any]] = {
         "states": ["n"],
         "initial": {"n": "100"},
     },
+    "daughter": {
+        "equations": ["n_1' = -k_1*n_1", "n_2' = k_1*n_1 - k_2*n_2"],
+        "states": ["n_1", "n_2"],
+        "initial": {"n_1": "N", "n_2": "0"},
+        "conditions": ["k_1 != k_2"],
+        "parameters": {
+            "k_1": {"assume": "positive"},
+            "k_2": {"assume": "positive"},
+            "N": {"assume": "positive"},
+        },
+    },
     "filter": {
         "equations": ["x_1' = -3*x_1 + x_2", "x_2' = -x_1 - x_2", "x_3' = x_1 - 5*x_3"],
         "states": ["x_1", "x_2", "x_3"],
