@@ -158,6 +158,8 @@ class Ground:
     def sampled(self) -> dict[str, arb]:
         """Return balls for the names of the field at one admissible choice of the parameters."""
         truth = self.truth
+        if truth.parameters and not (truth.values or truth.samples):
+            raise NotJudgedError("no values are known for which this case holds")
         chosen = truth.values or (truth.samples[0] if truth.samples else {})
         balls = {}
         for name, tree in chosen.items():

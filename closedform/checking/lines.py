@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from closedform.checking.claim import SourceLine
 from closedform.checking.facts import Facts
 from closedform.notation.written.reader import read_latex
-from closedform.notation.written.tree import Reading, Written
+from closedform.notation.written.tree import IMAGINARY, Identity, Reading, Written, changed
 from closedform.notation.written.typed_reader import read_typed
 from closedform.notation.written.written_errors import NotReadError
 
@@ -37,7 +37,7 @@ def read_line(line: SourceLine, facts: Facts) -> ReadLine:
         reading = read(line.text, facts.declared, place=line.place)
     except NotReadError as error:
         return ReadLine(line, None, error.paragraph)
-    of = _stated(line.of, facts) if line.says in VECTORS else None
+    of = _number(_stated(line.of, facts)) if line.says in VECTORS else None
     at = _stated(line.at, facts) if line.at else None
     return ReadLine(line, reading, "", of, at)
 
@@ -56,3 +56,10 @@ def _stated(text: str, facts: Facts) -> Written | None:
         return None
     members = reading.statements[0].members if reading.statements else ()
     return members[-1] if members else None
+
+
+def _number(tree: Written | None) -> Written | None:
+    """Return an eigenvalue that is stated beside a line: I in it is the imaginary unit."""
+    if tree is None:
+        return None
+    return changed(tree, lambda node: IMAGINARY if isinstance(node, Identity) else None)

@@ -87,13 +87,22 @@ class Region:
         return sign
 
     def points(self, names: Sequence[str]) -> tuple[dict[str, Scalar], ...]:
-        """Return some points, each a number of the field for every one of the names."""
+        """Return some points, each a number of the field for every one of the names.
+
+        Where the search for them finds none, the equations are solved first.
+        """
         found = self.domain.sample(SAMPLES, SEED) if names else []
         field = self.field
-        return tuple(
-            {n: field.scalar(v) if isinstance(v, Fraction) else v for n, v in point.items()}
-            for point in ({n: whole[n] for n in names} for whole in found)
-        )
+        points = [
+            {n: field.scalar(v) if isinstance(v, Fraction) else v for n, v in whole.items()}
+            for whole in found or (self.solved.domain.sample(SAMPLES, SEED) if names else [])
+        ]
+        if not found:
+            points = [
+                p | {n: field.substituted(value, p) for n, value in self.given.items()}
+                for p in points
+            ]
+        return tuple({n: point[n] for n in names} for point in points)
 
     def at(self, values: Mapping[str, Fraction]) -> Region:
         """Return the region of the other parameters, with numbers for some of them."""
