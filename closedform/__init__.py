@@ -14,9 +14,9 @@ from importlib import import_module
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from closedform.checking.check import check_file
     from closedform.checking.verdict import CheckReport
     from closedform.document.checked_report import write_check
+    from closedform.document.own import check_file
     from closedform.document.writeup import WriteUp, write_up
     from closedform.model.building import system
     from closedform.model.driven.model import DrivenModel
@@ -62,7 +62,7 @@ _HOMES = {
     "Response": "closedform.response.response",
     "VerificationRecord": "closedform.verification.record",
     "WriteUp": "closedform.document.writeup",
-    "check_file": "closedform.checking.check",
+    "check_file": "closedform.document.own",
     "load": "closedform.model.reading",
     "respond": "closedform.response.solving",
     "system": "closedform.model.building",

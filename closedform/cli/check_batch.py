@@ -116,9 +116,9 @@ def _check_one(
     name = printable(Path(source).stem)
     try:
         progress.stage(name, "reading")
-        from closedform.checking.check import check_file
         from closedform.document.checked_report import write_check
         from closedform.document.engine import compile_pdf
+        from closedform.document.own import check_file
 
         progress.stage(name, "solving and checking")
         report = check_file(source, model=wishes.model)

@@ -18,7 +18,16 @@ from closedform.document.writeup import made_from
 from closedform.errors import InputError
 from closedform.model.reading import load
 
-__all__ = ["ModelNotNamedError", "UnreadableWriteUpError", "check_writeup", "is_writeup"]
+__all__ = [
+    "ModelNotNamedError",
+    "UnreadableWriteUpError",
+    "check_file",
+    "check_writeup",
+    "is_writeup",
+]
+
+HEAD = 4096
+"""Bytes of a file in which it says what it is."""
 
 
 class ModelNotNamedError(InputError):
@@ -52,6 +61,31 @@ class UnreadableWriteUpError(InputError):
 
     def __str__(self) -> str:
         return f"{self.path}: cannot be read: {self.reason}. Name a .tex file in UTF-8."
+
+
+def check_file(path: str | Path, *, model: str | Path | None = None) -> CheckReport:
+    """Return what is found about a file: a write-up of this program, or a hand derivation.
+
+    `model` is taken instead of the model that the file names.
+
+    Raises:  what `check_writeup` raises for a write-up, and what
+             `closedform.checking.check.check_file` raises for anything else.
+    """
+    if _begins_as_writeup(Path(path)):
+        return check_writeup(path, model)
+    from closedform.checking.check import check_file as check_derivation
+
+    return check_derivation(path, model=model)
+
+
+def _begins_as_writeup(file: Path) -> bool:
+    """Whether the first lines say so; a file that cannot be read is none."""
+    try:
+        with file.open("rb") as opened:
+            head = opened.read(HEAD)
+    except OSError:
+        return False
+    return is_writeup(head.decode("utf-8", "replace"))
 
 
 def is_writeup(text: str) -> bool:
