@@ -11,6 +11,7 @@ from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.claim import Claim
 from closedform.checking.compare import compare
 from closedform.checking.constants import constant_values, is_constant_of_integration
+from closedform.checking.definitions import quantities_meant, require_definition
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.exact import Value, exact
 from closedform.checking.ground import Ground
@@ -174,7 +175,7 @@ def judge_identity(claim: Claim, setting: Setting) -> Finding:
     known = [name for name in names if _is_known(name, claim, setting)]
     members = (*known, *claim.values)
     if len(members) < 2:
-        if claim.stated or not claim.names:
+        if (claim.stated and claim.says != "definition") or not claim.names:
             raise NotJudgedError("it does not tell what it is a value of")
         return Finding("holds", "a definition; nothing is claimed")
     first = setting.opened(members[0])
@@ -224,7 +225,19 @@ def judge_definition(claim: Claim, setting: Setting) -> Finding:
     for name in names:
         if is_constant_of_integration(name, setting) and not _is_new(name, claim, setting):
             return _constant(name, claim, setting)
-    return judge_identity(claim, setting)
+    found = judge_identity(claim, setting)
+    if claim.stated or not found.passes:
+        return found
+    require_definition(claim, setting)
+    meant = quantities_meant(claim, setting)
+    known = [own for own in meant if any(True for _ in _quantities(own, setting.ground))]
+    if known and not any(judge_quantity(own, setting).passes for own in known):
+        kinds = " or ".join(own.says for own in known)
+        raise NotJudgedError(
+            f"the model has no such {kinds}; if it is meant to be one, let says tell which, and "
+            "else let it say definition"
+        )
+    return found
 
 
 def _is_new(name: str, claim: Claim, setting: Setting) -> bool:
