@@ -339,8 +339,8 @@ def _in_order(matrix: ExactMatrix, setting: Setting, ground: Ground) -> bool:
 def judge_transformation(claim: Claim, setting: Setting) -> Finding:
     """Judge P: invertible, and A P = P J for the author's J, before or after the line.
 
-    Without J the order of the author's eigenvalues is taken, without these any.  Columns in
-    another order than J asks for are right up to order.
+    Without J the order of the author's eigenvalues is asked for, and another one is right up to
+    order; without these any order is.
     """
     last: Finding | None = None
     for member in claim.values:
@@ -372,13 +372,13 @@ def _transformation(
         if finding is not None:
             return finding
     product = inverse @ ground.matrix @ matrix
-    own = authors_matrix("J", setting, ground) or authors_matrix("real form", setting, ground)
-    if own is not None and own.shape == product.shape and is_similar(own, ground):
-        if (product - own).is_zero:
-            return Finding("holds", "A P = P J")
-        if is_block_form(product):
-            return Finding("holds up to order", "its columns are in another order than J asks for")
-        return Finding("fails", _columns_text(matrix, ground) or "A P is not P J")
+    stated = [form for form in _canonical_forms(setting, ground) if is_similar(form, ground)]
+    if any((product - form).is_zero for form in stated):
+        return Finding("holds", "A P = P J")
+    if stated:
+        turned = "A P is not P J: its columns are in another order than J asks for"
+        reason = turned if is_block_form(product) else "A P is not P J"
+        return Finding("fails", _columns_text(matrix, ground) or reason)
     if not is_block_form(product):
         if has_decimals(member):
             finding = _rounded_columns(member, setting, ground)
@@ -389,6 +389,26 @@ def _transformation(
     if order is not None and _is_diagonal(product) and not (product - order).is_zero:
         return Finding("holds up to order", "its columns are in another order than the eigenvalues")
     return Finding("holds", "P^-1 A P is in blocks")
+
+
+def _canonical_forms(setting: Setting, ground: Ground) -> list[ExactMatrix]:
+    """Return every J and real form that the author states, before or later."""
+    claims = [
+        *(entry.claim for says in CANONICAL for entry in setting.author.all(says)),
+        *(claim for claim in setting.later if claim.says in CANONICAL),
+    ]
+    found = []
+    for claim in claims:
+        try:
+            matrix = matrix_value(claim.values[-1], setting, ground) if claim.values else None
+        except (NotJudgedError, NotElementaryError, ZeroDivisionError):
+            continue
+        if matrix is not None and matrix.shape == (ground.size, ground.size):
+            found.append(matrix)
+    return found
+
+
+CANONICAL = ("J", "real form")
 
 
 def _rounded_columns(member: Written, setting: Setting, ground: Ground) -> Finding | None:

@@ -12,6 +12,7 @@ from tests.checking.generated.form_slips import slipped
 from tests.checking.generated.lines import Derivation, Line
 from tests.checking.generated.motion import MotionSheet
 from tests.checking.generated.object_slips import SLIPS
+from tests.checking.generated.parametric import parametric
 from tests.checking.generated.pen import pen_of
 
 __all__ = ["derivation_of"]
@@ -62,6 +63,8 @@ def derivation_of(seed: int) -> Derivation:
 
 def _derivation(seed: int) -> Derivation:
     rng = Random(seed)
+    if rng.random() < 0.25:
+        return parametric(seed, rng)
     case = case_of(rng)
     plain_i = not {"i", "j"} & set(case.states)
     pen = pen_of(rng, case.names, plain_i=plain_i)

@@ -66,7 +66,7 @@ NAMINGS = (
     lambda n: [f"N_{k + 1}" for k in range(n)],
     lambda n: ["x", "y", "z", "w"][:n],
     lambda n: ["u", "v", "w", "q"][:n],
-    lambda n: ["i", "v", "q", "w"][:n],
+    lambda n: ["i_L", "v", "q", "w"][:n],
     lambda n: ["theta", "omega", "phi", "q"][:n],
 )
 LETTERS = {"theta": r"\theta", "omega": r"\omega", "phi": r"\varphi", "psi": r"\psi"}

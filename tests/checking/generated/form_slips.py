@@ -49,9 +49,15 @@ def slipped(line: Line, rng: Random) -> Line | None:
 
 
 def _changes(form: F, rng: Random) -> Iterator[tuple[str, F]]:
+    names = {node.args[0] for _, node in nodes(form) if node.op == "name"} - {"lambda"}
     for path, node in nodes(form):
         for what, new in _of_node(node, rng):
             yield what, replaced(form, path, new)
+        if node.op == "name":
+            for other in sorted(names - {node.args[0]}):
+                yield "another name", replaced(form, path, forms.name(other))
+        if node.op == "shift":
+            yield "delay not shifted", replaced(form, path, forms.T)
 
 
 def _of_node(node: F, rng: Random) -> Iterator[tuple[str, F]]:
@@ -82,7 +88,7 @@ def _of_node(node: F, rng: Random) -> Iterator[tuple[str, F]]:
                 rest = args[:k] + args[k + 1 :]
                 if factor.op == "t" or (factor.op == "pow" and factor.args[0].op == "t"):
                     yield "missing t", forms.mul(*rest)
-                elif factor.op in ("num", "dec", "div", "exp"):
+                elif factor.op in ("num", "dec", "div", "exp", "name"):
                     yield "dropped factor", forms.mul(*rest)
         case "sqrt":
             yield "missing root", args[0]

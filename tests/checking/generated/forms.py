@@ -126,6 +126,8 @@ def value(f: F, env: Mapping[str, Any], *, exact: bool = False) -> Any:
     if op == "step":
         argument = value(args[0], env, exact=exact)
         return mpmath.mpf(1 if argument >= 0 else 0)
+    if op == "shift":
+        return env["t"] - value(args[0], env, exact=exact)
     if op == "num_of":
         return args[0].number()
     if op == "at":

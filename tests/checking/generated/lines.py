@@ -35,6 +35,7 @@ class Line:
     follows: bool = False
     strict: bool = True
     stated: bool = False
+    defines: bool = False
     latex: str = field(default="")
 
     def written(self, pen: Pen) -> Line:

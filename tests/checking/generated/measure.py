@@ -46,6 +46,8 @@ class Tally:
     counts: Counter[str] = field(default_factory=Counter)
     slips: Counter[tuple[str, str]] = field(default_factory=Counter)
     faults: list[Fault] = field(default_factory=list)
+    weak: list[Fault] = field(default_factory=list)
+    """Slips that were found and not named, and consequences that were not recognised."""
     crashes: list[str] = field(default_factory=list)
     seconds: float = 0.0
 
@@ -93,7 +95,9 @@ def _count(derivation: Derivation, verdicts: tuple[LineVerdict, ...], tally: Tal
     for number, (line, found) in enumerate(zip(derivation.lines, verdicts, strict=True), start=1):
         tally.counts["lines"] += 1
         kind = _fault(derivation, line, found, tally)
-        if kind:
+        if kind.startswith("-"):
+            tally.weak.append(Fault(kind[1:], derivation.seed, number, line, found, derivation))
+        elif kind:
             tally.faults.append(Fault(kind, derivation.seed, number, line, found, derivation))
             tally.counts[kind] += 1
 
@@ -105,6 +109,9 @@ def _fault(derivation: Derivation, line: Line, found: LineVerdict, tally: Tally)
         tally.counts["right lines"] += 1
         if found.passes:
             return ""
+        if found.verdict == "carried" and any(x.defines and x.wrong for x in derivation.lines):
+            tally.counts["carried by a name"] += 1
+            return ""
         beside = line.says in ("P inverse", "exp J") and derivation.slip
         return "right beside a wrong one fails" if beside else "right line failed"
     tally.counts["wrong lines"] += 1
@@ -115,9 +122,11 @@ def _fault(derivation: Derivation, line: Line, found: LineVerdict, tally: Tally)
         named = found.slip.name if found.slip is not None else ""
         tally.slips[line.slip, named] += 1
         tally.counts["slip told" if named else "slip not told"] += 1
-        return "" if found.verdict == "fails" else "slip taken for carried"
+        if found.verdict != "fails":
+            return "slip taken for carried"
+        return "" if named else "-slip not told"
     if found.verdict == "carried":
         tally.counts["carried recognised"] += 1
         return ""
     tally.counts["carried not recognised"] += 1
-    return ""
+    return "-carried not recognised"

@@ -41,11 +41,14 @@ class MotionSheet(Sheet):
             else rf"\frac{{\mathrm{{d}} {text}}}{{\mathrm{{d}}t}}"
         )
 
-    def ways(self, wave: Wave) -> list[tuple[F, bool]]:
-        """Return a few forms of a real function, each with whether it has rounded decimals."""
+    def ways(self, wave: Wave, *, plain: bool = False) -> list[tuple[F, bool]]:
+        """Return a few forms of a real function, each with whether it has rounded decimals.
+
+        With `plain` the first of them is exact.
+        """
         rng, found = self.rng, []
         for _ in range(rng.choice((1, 1, 2, 3))):
-            rounded = rng.random() < 0.35
+            rounded = rng.random() < 0.35 and not plain
             writer = self.writer(rounded=rounded)
             way = rng.choice(("", "", "amplitude", "hyperbolic", "exponentials"))
             form = None
@@ -56,6 +59,7 @@ class MotionSheet(Sheet):
             elif way == "exponentials" and not rounded:
                 form = writer.exponentials(wave)
             found.append((form if form is not None else writer.function(wave), rounded))
+            plain = False
         return found
 
     def solution_lines(self) -> None:
@@ -73,16 +77,14 @@ class MotionSheet(Sheet):
                 self.solution = tuple(solution)
             judge = reference.function_judge(self._truth(true))
             spoken = mine
-            for form, rounded in self.ways(spoken):
+            for form, rounded in self.ways(spoken, plain=bool(what)):
                 line = Line(
                     "solution",
                     (self.left(case.states[k]),),
                     (form,),
                     judge,
                     subject=case.states[k],
-                    signs=(r"\approx",)
-                    if form_rounded(form) and self.rng.random() < 0.7
-                    else ("=",),
+                    signs=self.sign(form),
                 )
                 self.put("solution", line, slipped=what)
                 del rounded
@@ -166,8 +168,11 @@ class MotionSheet(Sheet):
             size = abs(own)
             digits = rng.choice((3, 4, 5))
             with mpmath.workdps(60):
+                printed = forms.rounded(size, digits)
+                if own * true > 0 and printed == forms.rounded(abs(true), digits):
+                    size = abs(true)
                 origin = F("at", (lambda env, size=size: size,))
-                form = forms.dec(forms.rounded(size, digits), origin)
+                form = forms.dec(printed, origin)
             values.append(form if own > 0 else forms.neg(form))
             signs.append(r"\approx")
         tail = ""

@@ -246,8 +246,8 @@ def no_inner(w: Wave, sheet: Any) -> Wave:
     return sheet.slip_origin
 
 
-def exponential_of(j: Matrix) -> tuple:
-    """Return e^(Jt) for a matrix of Jordan blocks, ones above or below the diagonal."""
+def exponential_of(j: Matrix) -> tuple | None:
+    """Return e^(Jt) for Jordan blocks, ones above or below the diagonal; None for other blocks."""
     size, at = len(j), 0
     rows = [[Wave()] * size for _ in range(size)]
     while at < size:
@@ -255,6 +255,8 @@ def exponential_of(j: Matrix) -> tuple:
         while end < size and not (j[end - 1][end].is_zero and j[end][end - 1].is_zero):
             lower = not j[end][end - 1].is_zero
             end += 1
+        if any(j[k][k] != j[at][at] for k in range(at, end)):
+            return None
         block = block_exponential(j[at][at], end - at, lower=lower)
         for i, row in enumerate(block):
             for k, entry in enumerate(row):

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass, field
 from decimal import Decimal
 from fractions import Fraction
@@ -38,7 +39,7 @@ class Pen:
 
     def write(self, f: F, level: int = SUM) -> str:
         """Return a formula; below `level` it is put in brackets."""
-        own = {"add": SUM, "neg": SUM, "pm": SUM, "mul": PRODUCT}.get(f.op, ATOM)
+        own = {"add": SUM, "neg": SUM, "pm": SUM, "shift": SUM, "mul": PRODUCT}.get(f.op, ATOM)
         text = getattr(self, f"_{f.op}")(f)
         return self.bracketed(text) if own < level else text
 
@@ -121,7 +122,11 @@ class Pen:
                 own = self.function(factor, bare=last or following.op == "fn")
             if factor.op == "pow" and factor.args[0].op in ("num", "dec"):
                 own = self.bracketed(own)
-            text += self.between(f.args[k - 1], factor, text) + own if k else own
+            if k:
+                own = self.between(f.args[k - 1], factor, text) + own
+                if own[0].isalpha() and re.search(r"\\[a-zA-Z]+$", text):
+                    own = " " + own
+            text += own
         return text
 
     def between(self, before: F, after: F, text: str) -> str:
@@ -209,6 +214,9 @@ class Pen:
 
     def _step(self, f: F) -> str:
         return self.rng.choice((r"u({})", r"\theta({})", r"H({})")).format(self.write(f.args[0]))
+
+    def _shift(self, f: F) -> str:
+        return "t-" + self.write(f.args[0])
 
     def _mat(self, f: F) -> str:
         rows = [[self.write(e) for e in row.args] for row in f.args]

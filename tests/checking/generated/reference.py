@@ -167,20 +167,29 @@ def _rank(matrix: mpmath.matrix) -> int:
     return sum(s > 1e-15 for s in singular)
 
 
-def vector_judge(case: Case, rate: Any, before: Any = None) -> Judge:
-    """Return the judge of a vector of an eigenvalue, or of a chain with the vector before it."""
+def vector_judge(case: Case, rates: Sequence[Any], place: int) -> Judge:
+    """Return the judge of a vector of one of some eigenvalues, at a place in its chain from 1 on.
+
+    (A - lambda I)^k v vanishes for k = 1, for an eigenvector, or for a larger k first, for a
+    generalized one: any length is allowed, and in a chain any share of the vectors before it.
+    """
 
     def accepts(v: Any) -> bool:
         a, vector = numeric(case.matrix), _matrix(v)
         if vector.cols != 1:
             vector = vector.T
-        if mpmath.norm(vector) < 1e-18:
-            return False
-        rest = a * vector - vector * rate
-        image = _matrix(before) if before is not None else vector * 0
-        return satisfied(rest, image)
+        found = [_place(a - mpmath.eye(case.size) * rate, vector) for rate in rates]
+        return any(k is not None and (k == place == 1 or k > 1 < place) for k in found)
 
     return matrix_judge(accepts)
+
+
+def _place(shifted: mpmath.matrix, vector: mpmath.matrix) -> int | None:
+    for k in range(shifted.rows + 1):
+        if mpmath.norm(vector) < 1e-18:
+            return k
+        vector = shifted * vector
+    return None
 
 
 def list_judge(true: Sequence[Any]) -> Judge:

@@ -343,7 +343,9 @@ class Sheet:
     def _after_exp_a(self) -> None:
         if not self.case.drive and self.exp_a:
             free = product(self.exp_a, times(column(self.case.initial), constant), Wave())
-            self.solution = tuple(row[0] for row in free)
+            found = tuple(row[0] for row in free)
+            if all(map(_is_real, found)):
+                self.solution = found
 
     def vector_lines(self) -> None:
         """Eigenvectors and chains, one to a line."""
@@ -354,18 +356,19 @@ class Sheet:
         for chain in self.chains:
             for k, vector in enumerate(chain.columns):
                 at += 1
-                before = None if k == 0 else [[x.number()] for x in chain.columns[k - 1]]
-                judge = reference.vector_judge(self.case, chain.rate.number(), before)
+                stated = rng.random() < 0.5 or k > 0
+                known = stated or "eigenvalues" in self.planned
+                own = [chain] if known else self.chains
+                judge = reference.vector_judge(self.case, [c.rate.number() for c in own], k + 1)
 
                 def holds(v, judge=judge) -> bool:
                     return judge((Writer(Random(0)).matrix(column(v)),), True)[0]
 
                 mine, what = self.slipping("vector", vector, holds)
-                if before is not None and not what and rng.random() < 0.3:
+                if k and not what and rng.random() < 0.3:
                     continue
                 form = self.writer().matrix(column(mine))
                 says = "eigenvector" if k == 0 else "generalized eigenvector"
-                stated = rng.random() < 0.5 or k > 0
                 line = Line(
                     says,
                     (f"{letter}_{at}",),
@@ -440,9 +443,10 @@ class Sheet:
         if all(len(c.columns) == 1 for c in self.chains) and not self.real_form:
             self.j_letter = self.rng.choice(("J", r"\Lambda", "D"))
         if what and self.carry and not self.real_form:
-            self.j = mine
-            self.exp_j = exponential_of(mine)
-            self._after_exp_j()
+            found = exponential_of(mine)
+            if found is not None:
+                self.j, self.exp_j = mine, found
+                self._after_exp_j()
         self.put("J", Line("J", (self.j_letter,), (form,), judge), slipped=what)
 
     def block_exponential_line(self) -> None:
@@ -484,9 +488,7 @@ class Sheet:
         )
         rounded = self.rng.random() < 0.15 and not what
         writer = self.writer(rounded=rounded)
-        real = all(
-            key[1].imag.is_zero or _has_conjugate(w) for row in mine for w in row for key in w.terms
-        )
+        real = all(_is_real(w) for row in mine for w in row)
         if real:
             form = writer.transition(mine)
         else:
@@ -533,7 +535,7 @@ def _key(x: Surd) -> tuple:
     return (x.a, x.b, x.c, x.e)
 
 
-def _has_conjugate(w: Wave) -> bool:
+def _is_real(w: Wave) -> bool:
     return all(
         (k, x.conjugate) in w.terms and w.terms[k, x.conjugate] == c.conjugate
         for (k, x), c in w.terms.items()
