@@ -90,7 +90,7 @@ def _minus_true(trial: Trial) -> Value:
 
 def forced_signs(trial: Trial) -> Iterator[Candidate]:
     """Yield the right particular solution where the line has that of m, c or k of opposite sign."""
-    ground, right = trial.ground, trial.right
+    ground, right = trial.ground, trial.right_in_known_names()
     if trial.claim.says not in ("particular solution", "steady state") or right is None:
         return
     jets, own = ground.truth.jets, trial.own()

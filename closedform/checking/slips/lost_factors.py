@@ -37,6 +37,7 @@ __all__ = [
     "missing_times",
     "missing_waves",
     "other_arguments",
+    "unexplained",
 ]
 
 MOST_NAMES = 6
@@ -87,7 +88,7 @@ def missing_names(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with a parameter, or the variable, as a factor more, or divided by one."""
     known = [*trial.setting.ground.truth.parameters][:MOST_NAMES]
     if trial.claim.says == "characteristic polynomial":
-        known += sorted(_strange(trial))
+        known += unexplained(trial)
     for spot in trial.spots():
         node, wave = spot.node, wave_above(spot)
         whole = spot.path == trial.start or isinstance(spot.outer, Sum | Negation | Apply)
@@ -109,10 +110,10 @@ def extra_names(trial: Trial) -> Iterator[Candidate]:
                     yield Candidate(names.FACTOR_TOO_MANY, where, new)
 
 
-def _strange(trial: Trial) -> set[str]:
-    """Return the names that the model does not explain."""
+def unexplained(trial: Trial) -> list[str]:
+    """Return the names that the model does not explain, such as the variable of a polynomial."""
     found = {n.name for n in walk(trial.setting.opened(trial.tree)) if isinstance(n, Symbol)}
-    return found - trial.ground.facts.names
+    return sorted(found - trial.ground.facts.names)
 
 
 def other_arguments(trial: Trial) -> Iterator[Candidate]:

@@ -32,7 +32,8 @@ MATRICES = (
 
 def swapped_products(trial: Trial) -> Iterator[Candidate]:
     """Yield the right e^(At) where the line has P^(-1) e^(Jt) P for the author's P."""
-    if trial.claim.says != "exp A" or trial.right is None:
+    right = trial.right_in_known_names()
+    if trial.claim.says != "exp A" or right is None:
         return
     own = trial.own()
     for p in _transformations(trial):
@@ -40,7 +41,7 @@ def swapped_products(trial: Trial) -> Iterator[Candidate]:
             inverse = p.inverse()
             middle = inverse @ trial.ground.transition @ p
             if (own - inverse @ middle @ p).is_zero:
-                yield Candidate(names.SWAPPED_P, "P^-1 e^(Jt) P for P e^(Jt) P^-1", trial.right)
+                yield Candidate(names.SWAPPED_P, "P^-1 e^(Jt) P for P e^(Jt) P^-1", right)
 
 
 def _transformations(trial: Trial) -> Iterator[ExactMatrix]:

@@ -12,8 +12,6 @@ from closedform.checking.judge_functions import solution_value
 from closedform.checking.matrices import ExactMatrix, column
 from closedform.checking.slips import names
 from closedform.checking.slips.trial import Candidate, Trial
-from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Symbol, Written, walk
 
 __all__ = ["Wrong", "parts", "where_equal"]
 
@@ -34,7 +32,9 @@ def where_equal(
     """Yield the right form if the member has a value to which one of some slips leads."""
     if trial.claim.says not in ("solution", "output", "value") or trial.true is None:
         return
-    right = _right(trial)
+    right = trial.right_in_known_names()
+    if right is None:
+        return
     stretches = trial.ground.stretches
     stretch = stretches[0]
     if len(stretches) != 1:
@@ -50,16 +50,6 @@ def where_equal(
         at = _at(trial, value)
         if at is not None and trial.equals(at):
             yield Candidate(name, where, right)
-
-
-def _right(trial: Trial) -> Written:
-    """Return the right form, in names that the line may use."""
-    known = trial.ground.facts.names
-    right = trial.right
-    if right is not None and {n.name for n in walk(right) if isinstance(n, Symbol)} <= known:
-        return right
-    assert trial.true is not None  # noqa: S101  asked for before
-    return written_back(trial.true)
 
 
 def _at(trial: Trial, value: Value) -> Value | None:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from fractions import Fraction
+from itertools import islice
 
 from flint import acb, ctx
 
@@ -32,6 +33,8 @@ from closedform.notation.written.tree import (
 
 __all__ = ["is_bare", "one_number", "same_number"]
 
+MOST_PLACES = 40
+
 
 def one_number(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with the right number at one place, the plainest first."""
@@ -40,7 +43,7 @@ def one_number(trial: Trial) -> Iterator[Candidate]:
     if is_bare(trial.tree) and trial.entry is None:
         yield from _bare(trial)
         return
-    found = [one for place in _places(trial) for one in solved(trial, place)]
+    found = [one for place in islice(_places(trial), MOST_PLACES) for one in solved(trial, place)]
     with ctx.workprec(BITS):
         found.sort(key=_plainness)
     for one in found:

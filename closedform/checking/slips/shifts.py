@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from closedform.checking.slips import names
+from closedform.checking.slips.lost_factors import unexplained
 from closedform.checking.slips.making import ONE, contains, negated, times
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Trial
@@ -74,6 +75,8 @@ def other_names(trial: Trial) -> Iterator[Candidate]:
     """Yield the formula with another name of a number in one place, or everywhere."""
     setting = trial.setting
     known = [*setting.ground.truth.parameters, *setting.author.definitions][:MOST_NAMES]
+    if trial.claim.says == "characteristic polynomial":
+        known += unexplained(trial)
     used = {n.name for n in walk(trial.tree) if isinstance(n, Symbol)} & set(known)
     for spot in trial.spots():
         if isinstance(spot.node, Symbol) and spot.node.name in known:

@@ -21,7 +21,8 @@ from closedform.checking.setting import Setting
 from closedform.checking.signs import both_signs
 from closedform.checking.slips.measuring import distance, largest, real, size
 from closedform.checking.slips.spots import Spot, Step, put, spots
-from closedform.notation.written.tree import Listing, Written
+from closedform.checking.written_back import written_back
+from closedform.notation.written.tree import Listing, Symbol, Written, walk
 
 __all__ = ["BITS", "EXACTLY", "SPECTRAL_SAMPLE", "Candidate", "Effort", "Point", "Trial", "Values"]
 
@@ -108,6 +109,14 @@ class Trial:
             return self.setting.value(self.tree, self.ground)
         except (*OUTSIDE, NotJudgedError):
             return None
+
+    def right_in_known_names(self) -> Written | None:
+        """Return the right form in names that the line may use, None if there is none."""
+        known = self.setting.ground.facts.names
+        right = self.right
+        if right is not None and {n.name for n in walk(right) if isinstance(n, Symbol)} <= known:
+            return right
+        return None if self.true is None else written_back(self.true)
 
     def equals(self, value: Value) -> bool:
         """Whether the member as written has a certain value, to the digits shown."""
