@@ -15,6 +15,7 @@ from closedform.document.symbols import added, side_box
 from closedform.notation.expression import (
     Call,
     Expression,
+    Name,
     Negation,
     Number,
     Product,
@@ -110,6 +111,8 @@ def _of_product(whole_product: Product, room: float) -> list[Box]:
         opened = _in_brackets(middle, room)
         if found and found[0].width + opened[0].width > room:
             opened = _in_brackets(middle, max(room - found[0].width, room / 2))
+        if found and isinstance(factors[widest - 1], Name | Call):  # no function of what follows
+            found = [Box(rf"{found[0].latex}\,", found[0].width + 0.17, found[0].height)]
         found = _led(found[0], opened) if found else opened
     else:
         opened = _opened(middle, room)

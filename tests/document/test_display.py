@@ -123,7 +123,7 @@ def test_a_matrix_of_long_entries_is_set_by_entry() -> None:
 def test_the_front_of_a_matrix_is_in_every_entry() -> None:
     w = wide_terms(1, 9)
     shown = displayed(says("exp A", TRANSITION, matrix((prod("c", w), prod("c", 2, T)))))
-    assert shown.latex.count(r"= c\Bigl(") == shown.latex.count(r"= c \cdot 2t") == 1
+    assert shown.latex.count(r"= c\,\Bigl(") == shown.latex.count(r"= c \cdot 2t") == 1
 
 
 def test_entries_can_be_demanded() -> None:

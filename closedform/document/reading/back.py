@@ -42,7 +42,7 @@ def read_back(text: str, printed: Printed, time: str, *, template: str | Path = 
 
 def reader_for(items: Sequence[Side | Statement | str], time: str) -> SideReader:
     """Return a reader of formulas that knows the names in what is to be printed."""
-    return SideReader(Vocabulary(items, time).declared)
+    return SideReader(Vocabulary(items, time).declared, time)
 
 
 def display_unlike(found: FoundDisplay, shown: Shown, expected: Expected) -> Difference | None:

@@ -17,10 +17,10 @@ from fractions import Fraction
 from math import gcd, lcm
 from typing import Any, cast
 
+from closedform.document.reading.spelling import BOLD
 from closedform.notation.latex.names import printed_key
 from closedform.notation.written.tree import (
     EULER,
-    IMAGINARY,
     Apply,
     Array,
     Constant,
@@ -47,8 +47,6 @@ from closedform.notation.written.tree import (
 )
 
 __all__ = [
-    "BOLD",
-    "UPRIGHT_I",
     "Value",
     "atom",
     "entries_of",
@@ -69,11 +67,6 @@ Rows = tuple[tuple[Value, ...], ...]
 NO_FACTORS: tuple[frozenset[tuple[Hashable, int]], tuple[Hashable, ...]] = (frozenset(), ())
 LARGEST_POWER = 4096
 """A number to a higher exponent is not worked out."""
-
-BOLD = "boldface"
-"""Begins the name of a matrix or vector, so that it is not taken for that of a number."""
-UPRIGHT_I = "uprighti"
-"""The number i where a name is an i, too."""
 
 DECIMAL = re.compile(r"[0-9]+(?:\.[0-9]+)?")
 OF_MATRICES = frozenset({"transpose", "inverse", "adj", "diag"})
@@ -97,7 +90,7 @@ def atom(base: Hashable, *, matrix: bool = False) -> Value:
 
 def named(text: str, *, bold: bool = False, argument: Value | None = None) -> Value:
     """Return the form of a name, or of what it is at an argument that is not the time."""
-    if text.startswith(BOLD) and text != BOLD:
+    if text.startswith(BOLD):
         text, bold = text.removeprefix(BOLD), True
     key = printed_key(text.replace("_hat", "hat").replace(",", "_").replace("-", "minus"))
     base = ("name", key, bold) if argument is None else ("at", key, bold, argument)
@@ -147,7 +140,14 @@ def _as_factor(
         (((factors, matrices), coefficient),) = value
         return coefficient, factors, matrices
     content = _content(coefficient for _, coefficient in value)
-    base = ("sum", frozenset((key, coefficient / content) for key, coefficient in value))
+    terms, opposite = (
+        frozenset((key, coefficient / scale) for key, coefficient in value)
+        for scale in (content, -content)
+    )
+    # either sign would do; equal sums have equal hashes, so that they take the same
+    if hash(opposite) < hash(terms):
+        terms, content = opposite, -content
+    base = ("sum", terms)
     if any(matrices for (_, matrices), _ in value):
         return content, frozenset(), (base,)
     return content, frozenset({(base, 1)}), ()
@@ -172,7 +172,23 @@ def _into_array(
                 inside = tuple(tuple(times((front, entry)) for entry in row) for row in rows)
                 ordered = (*matrices[:place], ("array", inside), *matrices[place + 1 :])
                 return frozenset({((frozenset(), ordered), Fraction(1))})
+    whole = _lone_sum(factors, matrices)
+    if whole is not None:
+        return frozenset((key, scale * coefficient) for key, coefficient in whole)
     return frozenset({((factors, matrices), scale)})
+
+
+def _lone_sum(
+    factors: frozenset[tuple[Hashable, int]], matrices: tuple[Hashable, ...]
+) -> Value | None:
+    """Return the terms of a sum that is the only factor: no bracket is left around it."""
+    if len(factors) + len(matrices) != 1:
+        return None
+    base, exponent = next(iter(factors)) if factors else (matrices[0], 1)
+    match base:
+        case ("sum", terms) if exponent == 1:
+            return cast("Value", terms)
+    return None
 
 
 def plus(values: Iterable[Value]) -> Value:
@@ -233,8 +249,6 @@ def _symbol(node: Symbol) -> Value:
         places = len(node.name.partition(".")[2])
         last = Fraction(1, 10**places)
         return _literal(Literal(Fraction(node.name), last, is_decimal=places > 0))
-    if node.name == UPRIGHT_I:
-        return normal(IMAGINARY)
     return named(node.name, bold=node.bold)
 
 

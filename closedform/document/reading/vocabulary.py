@@ -6,7 +6,7 @@ from collections.abc import Iterable
 
 from closedform.derivation.step import Matrix, Side, Statement, Symbol
 from closedform.document.reading.expected import STEPS
-from closedform.document.reading.normal import BOLD
+from closedform.document.reading.spelling import BOLD, spelled_name
 from closedform.notation.expression import FUNCTIONS, SIGNALS, Call, Expression, names_in, rebuilt
 from closedform.notation.jets import jet_of
 from closedform.notation.latex.names import IMAGINARY, dot_ending, printed_key
@@ -36,10 +36,11 @@ class Vocabulary:
     def declared(self) -> Declared:
         """The names as the reader of formulas wants them; a function's name is no number's."""
         functions = frozenset(self.functions)
+        numbers = frozenset(self.numbers) - functions - {self.time}
         return Declared(
-            parameters=frozenset(self.numbers) - functions - {self.time},
-            functions=functions,
-            time=self.time,
+            parameters=frozenset(map(spelled_name, numbers)),
+            functions=frozenset(map(spelled_name, functions)),
+            time=spelled_name(self.time),
         )
 
     def add(self, item: Side | Statement | str) -> None:
@@ -102,15 +103,15 @@ class Vocabulary:
             case kind if kind in BOLD_KINDS and (
                 symbol.argument or kind in ("derivative", "dotted")
             ):
-                self._function(BOLD + letter, symbol)
+                self._function(letter, symbol, BOLD)
             case "scalar" if symbol.argument or symbol.order:
                 self._function(letter, symbol)
             case "scalar":
                 self._name(letter)
 
-    def _function(self, letter: str, symbol: Symbol) -> None:
+    def _function(self, letter: str, symbol: Symbol, mark: str = "") -> None:
         key = printed_key(jet_of(letter.replace("_hat", "hat"))[0])
         for ending in (dot_ending(1), dot_ending(2), dot_ending(3)):
             key = key.removesuffix(ending)
         indices = [i.replace(",", "_") for i in symbol.indices if i]
-        self.functions.add("_".join([key, *indices]))
+        self.functions.add(mark + "_".join([key, *indices]))

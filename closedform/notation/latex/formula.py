@@ -11,6 +11,7 @@ from __future__ import annotations
 from fractions import Fraction
 
 from closedform.notation.expression import (
+    ONE,
     Call,
     Expression,
     Name,
@@ -235,13 +236,10 @@ def _signal_head(function: str, style: Style) -> Box:
 def _product(expression: Product, style: Style) -> Box:
     factors = factors_of(expression)
     if style >= Style.SCRIPT and len(factors) > 1:
-        match factors[0]:
-            case Number(value) if value.denominator > 1:
-                # 3/2 t is set as 3t/2 in an exponent: the slash would seem to go on
-                top = product((Number(Fraction(value.numerator)), *factors[1:]))
-                return _slashed(top, Number(Fraction(value.denominator)), style)
-            case Quotient(above, below):
-                return _slashed(product((above, *factors[1:])), below, style)
+        # 3/2 t is set as 3t/2 in an exponent: the slash would seem to go on
+        above, below = zip(*map(_over, factors), strict=True)
+        if any(lower != ONE for lower in below):
+            return _slashed(product(above), product(below), style)
     boxes: list[Box] = []
     for i, factor in enumerate(factors):
         following = factors[i + 1] if i + 1 < len(factors) else None
@@ -251,6 +249,16 @@ def _product(expression: Product, style: Style) -> Box:
             boxes.append(Box(glue, space * style.scale))
         boxes.append(box)
     return joined(*boxes)
+
+
+def _over(factor: Expression) -> tuple[Expression, Expression]:
+    """Return what stands above and below the slash of a factor, if it has one."""
+    match factor:
+        case Number(value):
+            return Number(Fraction(value.numerator)), Number(Fraction(value.denominator))
+        case Quotient(above, below):
+            return above, below
+    return factor, ONE
 
 
 def _one_of(factor: Expression, following: Expression | None, style: Style) -> Box:

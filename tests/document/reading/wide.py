@@ -28,9 +28,9 @@ from closedform.notation.expression import (
 
 NAMES = (
     *("k", "k_12", "omega_1", "alpha", "m1", "lambda_1", "zeta", "R", "speed", "v_left", "t"),
-    *("x_0", "e", "i", "j", "A", "g_1", "x'", "y1''", "q_in_left", "0.040"),
+    *("x_0", "e", "i", "j", "A", "g_1", "q_in_left", "0.040"),
 )
-"""Among them letters that have customary meanings, derivatives, and a decimal."""
+"""Among them letters that have customary meanings, and a decimal."""
 
 
 def _numbers() -> st.SearchStrategy[Expression]:
