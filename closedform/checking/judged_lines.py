@@ -12,6 +12,7 @@ from closedform.checking.conditions import grounds_meant, is_in_pieces
 from closedform.checking.facts import Facts
 from closedform.checking.judge import Judgement, judged, stated
 from closedform.checking.lines import ReadLine, read_line
+from closedform.checking.meant import as_meant
 from closedform.checking.naming import in_order
 from closedform.checking.recognise import claims_of
 from closedform.checking.setting import Finding, Setting
@@ -135,13 +136,15 @@ def _all(
     read: ReadLine, claims: tuple[Claim, ...], setting: Setting, notes: tuple[str, ...]
 ) -> tuple[JudgedLine, Author]:
     """Judge the claims of a line: first what gives names, then the rest, in order."""
-    judgements, author = [], setting.author
+    placed, author = list[tuple[int, Judgement]](), setting.author
     later = (*claims, *setting.later)
     for claim in in_order(claims, setting.ground.facts):
-        found = judged(claim, replace(setting, author=author, later=later))
-        judgements.append(found)
+        own = replace(setting, author=author, later=later)
+        found = judged(as_meant(claim, own), own)
+        placed.append((claims.index(claim), found))
         author = stated(author, found)
-    judgements.sort(key=lambda judgement: claims.index(judgement.claim))
+    placed.sort(key=lambda pair: pair[0])
+    judgements = [found for _, found in placed]
     return JudgedLine(read, tuple(judgements), setting, notes), author
 
 

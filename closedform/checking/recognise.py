@@ -7,7 +7,9 @@ from dataclasses import replace
 from fractions import Fraction
 
 from closedform.checking.claim import Claim, Group, SourceLine
+from closedform.checking.conjugates import with_conjugates, with_names
 from closedform.checking.facts import Facts
+from closedform.checking.left_sides import QUANTITIES as NAMED_QUANTITIES
 from closedform.checking.left_sides import Left, base_and_indices, left_of
 from closedform.checking.order import is_order, parted
 from closedform.notation.written.tree import (
@@ -30,6 +32,7 @@ MATRICES = frozenset({"matrix", "P", "J"})
 OF_STATES = frozenset({"solution", "value", "initial value", "particular solution"})
 OF_STATES |= {"steady state", "homogeneous solution"}
 SPECTRAL = ("lambda", "s", "r", "mu", "z")
+QUANTITIES = frozenset(NAMED_QUANTITIES.values())
 
 
 def claims_of(
@@ -44,7 +47,7 @@ def claims_of(
 
     `of` and `at` are what the author states beside the line, read.
     """
-    statements = parted(statements, facts)
+    statements = parted(tuple(map(with_conjugates, statements)), facts)
     if line.says:
         return _stated(line, statements, facts, of, at)
     found: list[Claim] = []
@@ -83,6 +86,12 @@ def _stated(
             continue
         left = _left(statement, facts)
         subject = line.of if says not in ("eigenvector", "generalized eigenvector") else ""
+        if says == "value" and (left is None or left.says in QUANTITIES):
+            told = left.says if left is not None else _quantity_of(line.of)
+            if told and len(statement.members) > 1:
+                left = left or Left(told)
+                claims.append(replace(_claim(line, statement, left, facts, of, at), stated=True))
+                continue
         named = left if left is not None and left.says == says else None
         if named is None and left is not None and says in ("value", "initial value"):
             named = left if left.says in ("value", "solution", "steady state") else None
@@ -97,6 +106,12 @@ def _stated(
         claim = _claim(line, statement, Left(says, known, instant, sign), facts, of, instant)
         claims.append(replace(claim, stated=True))
     return tuple(claims)
+
+
+def _quantity_of(text: str) -> str:
+    """Return the quantity that an author says a value is, of any customary name; or nothing."""
+    found = [kind for kind in sorted(QUANTITIES) if kind in text.lower()]
+    return found[0] if len(found) == 1 else ""
 
 
 def _called(statement: Statement, subject: str) -> str:
@@ -130,6 +145,8 @@ def _left(statement: Statement, facts: Facts) -> Left | None:
         left = None
     if left is not None and left.says == "solution" and _is_equation(first, rest, facts):
         left = None
+    if left is not None and left.says == "solution" and _is_constant_column(first, rest, facts):
+        return Left("eigenvector", left.subject)
     if left is None and _is_vector_name(first, rest):
         return Left("eigenvector", first.name if isinstance(first, Symbol) else "")
     return left
@@ -293,17 +310,33 @@ def _is_vector_name(first: Written, rest: Sequence[Written]) -> bool:
     return base in VECTORS and columns
 
 
+def _is_constant_column(first: Written, rest: Sequence[Written], facts: Facts) -> bool:
+    """Whether a letter of a state, as v_1, has a column of constants: a vector is meant."""
+    if not isinstance(first, Jet) or first.order or first.at is not None:
+        return False
+    base, index = base_and_indices(first.name)
+    inside = [node for member in rest for node in walk(member)]
+    return (
+        base in VECTORS
+        and index.isdigit()
+        and any(_is_column(member, facts) for member in rest)
+        and not any(isinstance(node, Jet) or node == Symbol(facts.time) for node in inside)
+    )
+
+
 def _eigenvalues(line: SourceLine, statements: tuple[Statement, ...], facts: Facts) -> Claim:
     """Return the claim of a line that lists eigenvalues, a group for each statement."""
-    groups = []
+    groups, known = [], dict[Symbol, Written]()
     for statement in statements:
         count = 0
         for member in statement.members[:-1]:
             if not _names_root(member, facts):
                 break
             count += 1
-        values = statement.members[count:]
-        groups.append(Group(statement.members[:count], values, statement.unit, statement.note))
+        names = statement.members[:count]
+        values = tuple(with_names(known, member) for member in statement.members[count:])
+        known |= {name: values[0] for name in names if isinstance(name, Symbol)}
+        groups.append(Group(names, values, statement.unit, statement.note))
     approximate = any("≈" in statement.relations for statement in statements)
     return Claim(line, statements, "eigenvalues", groups=tuple(groups), approximate=approximate)
 
