@@ -70,6 +70,7 @@ def inverses(trial: Trial) -> Iterator[Candidate]:
         determinant = written_back(p.determinant())
         one = times(over(ONE, determinant), trial.tree)
         yield Candidate(names.MISSING_DETERMINANT, "the factor in front", one)
+        yield Candidate(names.MISSING_DETERMINANT, "the factor in front", negated(one))
         twice = times(over(ONE, times(determinant, determinant)), trial.tree)
         yield Candidate(names.DETERMINANT_TWICE, "the factor in front", twice)
         own = trial.own()
