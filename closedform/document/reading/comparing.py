@@ -8,9 +8,9 @@ from dataclasses import dataclass
 
 from closedform.derivation.step import Matrix, Statement
 from closedform.document.reading.expected import Chain, Expected
-from closedform.document.reading.normal import Value, entries_of
 from closedform.document.reading.rows import SideTexts
 from closedform.document.reading.sides import SideReader
+from closedform.document.reading.values import Value, entries_of
 
 __all__ = ["Difference", "chain_unlike", "read_chain", "unlike"]
 

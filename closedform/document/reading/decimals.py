@@ -9,8 +9,9 @@ from fractions import Fraction
 from closedform.document.printed import ShownTable
 from closedform.document.reading.expected import Expected, both_signs
 from closedform.document.reading.found import FoundTable
-from closedform.document.reading.normal import Value, normal, number, plus, times
+from closedform.document.reading.normal import normal
 from closedform.document.reading.sides import SideReader
+from closedform.document.reading.values import Value, number, plus, times
 from closedform.notation.latex.escape import escaped
 from closedform.notation.written.tree import IMAGINARY, Literal
 

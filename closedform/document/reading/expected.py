@@ -8,13 +8,12 @@ from dataclasses import dataclass
 from fractions import Fraction
 
 from closedform.derivation.step import IMAGINARY_UNIT, Matrix, Side, Statement, Symbol
-from closedform.document.reading.normal import (
+from closedform.document.reading.normal import named, normal
+from closedform.document.reading.values import (
     Value,
     atom,
     exponential,
     inverted,
-    named,
-    normal,
     number,
     plus,
     raised,

@@ -5,8 +5,9 @@ from __future__ import annotations
 import re
 
 from closedform.document.reading.expected import entry, functions_of, one_sided, residue_sum
-from closedform.document.reading.normal import Value, normal
+from closedform.document.reading.normal import normal
 from closedform.document.reading.spelling import BOLD, restored, spelled
+from closedform.document.reading.values import Value
 from closedform.errors import ClosedformError
 from closedform.notation.written.reader import read_latex
 from closedform.notation.written.tree import Declared, Jet, Symbol, Written, changed

@@ -13,6 +13,7 @@ from closedform.document.origin import Origin, origin_line, origin_of, path_betw
 from closedform.document.own import (
     ModelNotNamedError,
     UnreadableWriteUpError,
+    check_file,
     check_writeup,
     is_writeup,
 )
@@ -161,6 +162,15 @@ def test_a_document_that_names_no_model_asks_for_one(tmp_path: Path, tanks: Path
     bare.write_bytes(b"\xff")
     with pytest.raises(UnreadableWriteUpError, match="UTF-8"):
         check_writeup(bare)
+
+
+def test_either_kind_of_file_is_checked(tanks: Path, tmp_path: Path) -> None:
+    assert check_file(tanks) == check_writeup(tanks)
+    hand = tmp_path / "hand.tex"
+    hand.write_text(r"\[ \lambda_1 = -\frac{1}{20} \]", encoding="utf-8")
+    report = check_file(hand, model=tanks.parent.parent / "three_equal_tanks.toml")
+    assert [verdict.line.text for verdict in report.lines] == [r"\lambda_1 = -\frac{1}{20}"]
+    assert report.title != check_writeup(tanks).title
 
 
 # --- the line at the top -----------------------------------------------------------------------
