@@ -94,6 +94,10 @@ def judge_block_exponential(claim: Claim, setting: Setting) -> Finding:
 
     def own(ground: Ground) -> ExactMatrix | None:
         for says in ("J", "real form"):
+            entry = setting.author.last(says)
+            if entry is not None and entry.root is not None:
+                asked = [product for product, _ in right_products(setting, ground)]
+                return asked[0] if asked else None
             found = authors_matrix(says, setting, ground)
             if found is not None and found.shape == ground.matrix.shape:
                 return found if is_similar(found, ground) else None

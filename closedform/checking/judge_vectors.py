@@ -38,6 +38,7 @@ __all__ = [
     "judge_inverse",
     "judge_transformation",
     "matrix_value",
+    "right_products",
 ]
 
 
@@ -305,10 +306,50 @@ def judge_canonical(claim: Claim, setting: Setting) -> Finding:
             return Finding("fails", "it is not similar to A", right(ground))
         if not is_block_form(matrix):
             return Finding("fails", "it is similar to A, but not in blocks", right(ground))
+        asked = _asked_by_transformation(matrix, claim, setting, ground)
+        if asked is not None:
+            return Finding("fails", "A P is not P J", written_back(asked))
         last = Finding("holds" if _in_order(matrix, setting, ground) else "holds up to order")
     if last is None:
         raise NotJudgedError("no matrix is given")
     return last
+
+
+def _asked_by_transformation(
+    matrix: ExactMatrix, claim: Claim, setting: Setting, ground: Ground
+) -> ExactMatrix | None:
+    """Return P^-1 A P for the author's P, stated before and right, if J ought to be that.
+
+    None is returned where J is that for some P, and where J and P are of different kinds, the
+    one real and the other not, so that they do not belong together.
+    """
+    asked = [product for product, _ in right_products(setting, ground)]
+    later = [c.values[-1] for c in setting.later if c.says == "P" and c.values]
+    kinds = [p for p in asked if _is_real(p) == _is_real(matrix) and is_block_form(p)]
+    if claim.says == "real form":
+        kinds = [p for p in kinds if not _is_diagonal(p)]
+    if not kinds or later or any((p - matrix).is_zero for p in asked):
+        return None
+    return kinds[0]
+
+
+def right_products(setting: Setting, ground: Ground) -> list[tuple[ExactMatrix, ExactMatrix]]:
+    """Return P^-1 A P and P for every right P without decimals that was stated before."""
+    found = []
+    for entry in setting.author.all("P"):
+        if entry.root is not None or has_decimals(entry.value):
+            continue
+        try:
+            p = matrix_value(entry.value, setting, ground)
+            if p.shape == ground.matrix.shape:
+                found.append((p.inverse() @ ground.matrix @ p, p))
+        except (NotJudgedError, NotElementaryError, ZeroDivisionError):
+            continue
+    return found
+
+
+def _is_real(matrix: ExactMatrix) -> bool:
+    return all(entry.field.im(entry).is_zero for entry in matrix.entries)
 
 
 def _rounded_form(claim: Claim, member: Written, setting: Setting) -> Finding:
@@ -375,7 +416,9 @@ def _transformation(
     stated = [form for form in _canonical_forms(setting, ground) if is_similar(form, ground)]
     if any((product - form).is_zero for form in stated):
         return Finding("holds", "A P = P J")
-    if stated:
+    before = any(setting.author.all(says) for says in CANONICAL)
+    first = is_block_form(product) and _in_order(product, setting, ground)
+    if stated and (before or not first):
         turned = "A P is not P J: its columns are in another order than J asks for"
         reason = turned if is_block_form(product) else "A P is not P J"
         return Finding("fails", _columns_text(matrix, ground) or reason)
