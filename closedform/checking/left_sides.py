@@ -33,6 +33,8 @@ CANONICAL = frozenset({"J", "Lambda", "D"})
 VECTORS = frozenset({"v", "u", "w", "xi", "phi", "q", "e", "psi", "eta", "p", "r", "x", "z"})
 POLYNOMIALS = frozenset({"p", "chi", "P", "Delta", "q", "D", "f", "c", "pi", "phi", "d", "a"})
 ROOTS = frozenset({"lambda", "s", "r", "mu", "theta", "p", "sigma", "nu", "alpha"})
+SPECTRA = frozenset({"sigma", "spec", "eig", "lambda", "Lambda"})
+"""Names of the set of eigenvalues: sigma(A) (common practice)."""
 QUANTITIES = {
     ("omega", "n"): "natural frequency",
     ("omega", "0"): "natural frequency",
@@ -179,6 +181,8 @@ def _names_identity(node: Written) -> bool:
 
 
 def _of_jet(jet: Jet, facts: Facts) -> Left | None:
+    if jet.name in SPECTRA - facts.names and jet.order == 0 and jet.at == Symbol("A"):
+        return Left("eigenvalues")
     name = spelled_jet(jet.name, jet.order)
     if jet.order == 0 and jet.at is not None and _is_spectral(jet.at, facts):
         return _of_spectral(jet.name, facts)
@@ -225,7 +229,7 @@ def _of_product(factors: tuple[Written, ...], facts: Facts) -> Left | None:
     match factors:
         case (Symbol(name), Symbol(time)) if time == facts.time and name in ("Phi", "phi", "Psi"):
             return Left("exp A")
-        case (Symbol("sigma" | "spec" | "Lambda"), Symbol("A")):
+        case (Symbol(name), Symbol("A")) if name in SPECTRA:
             return Left("eigenvalues")
         case (first, Symbol("A"), Symbol(last)):
             left = left_of(first, facts)
