@@ -19,7 +19,12 @@ from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Scope, Value, applies, exact
 from closedform.checking.exponential import matrix_exponential
 from closedform.checking.ground import SPECTRAL, Ground, Stretch
-from closedform.checking.judge_vectors import authors_diagonal, authors_matrix, matrix_value
+from closedform.checking.judge_vectors import (
+    authors_diagonal,
+    authors_matrix,
+    matrix_value,
+    right_products,
+)
 from closedform.checking.judging import held_against
 from closedform.checking.matrices import (
     ExactMatrix,
