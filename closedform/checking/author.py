@@ -6,7 +6,16 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field, replace
 
 from closedform.checking.claim import Claim
-from closedform.notation.written.tree import Jet, Symbol, Written, changed
+from closedform.notation.written.tree import (
+    INFINITY,
+    Derivative,
+    Evaluated,
+    Jet,
+    Limit,
+    Symbol,
+    Written,
+    changed,
+)
 
 __all__ = ["Author", "Entry"]
 
@@ -40,7 +49,8 @@ class Author:
 
     `definitions` are names that lines gave to numbers or matrices, with what they stand for;
     `definition_roots` are the lines on which those rest that are wrong, `right_values` what
-    these ought to be.  Names in `kept` have the meaning that the model gives them.
+    these ought to be.  Names in `kept` have the meaning that the model gives them.  A name may
+    stand for a function of `time`.
     """
 
     entries: tuple[Entry, ...] = ()
@@ -48,6 +58,7 @@ class Author:
     definition_roots: Mapping[str, int] = field(default_factory=dict)
     right_values: Mapping[str, Written] = field(default_factory=dict)
     kept: frozenset[str] = frozenset()
+    time: str = "t"
     alternatives: Mapping[str, Written] = field(default_factory=dict)
     """Other values of names that a line fixes up to a choice: an angle by its tangent."""
 
@@ -122,6 +133,20 @@ class Author:
             return tree
 
         def change(node: Written) -> Written | None:
-            return known.get(node.name) if isinstance(node, Symbol) else None
+            if isinstance(node, Symbol):
+                return known.get(node.name)
+            if isinstance(node, Jet) and node.name in known:
+                return self._function(node, known[node.name])
+            return None
 
         return changed(tree, change)
+
+    def _function(self, jet: Jet, value: Written) -> Written:
+        """Return a function of the author's, its derivative, or its value at an instant."""
+        if jet.order:
+            value = Derivative(value, self.time, jet.order)
+        if jet.at is None or jet.at == Symbol(self.time):
+            return value
+        if jet.at == INFINITY:
+            return Limit(value, self.time, INFINITY)
+        return Evaluated(value, self.time, self.put_in(jet.at))

@@ -63,6 +63,7 @@ def compare(
         return _by_digits(claimed, true, ground, unless=error.reason, approximate=approximate)
     except ZeroDivisionError:
         return Comparison("different", "it divides by zero")
+    value, true = _zeros(value, true)
     shapes = _shape(value), _shape(true)
     if shapes[0] != shapes[1]:
         return Comparison("different", str(SizeError("a comparison", *_as_sizes(shapes))))
@@ -78,6 +79,15 @@ def compare(
         wrong = _wrong_entries(found.match, true) or different
         return Comparison("different", found.reason, wrong[0], wrong, found.match)
     return Comparison("different", "", different[0], different)
+
+
+def _zeros(value: Value, true: Value) -> tuple[Value, Value]:
+    """Return two values, the number 0 as the matrix of zeros where the other is a matrix."""
+    if isinstance(value, ExactMatrix) and isinstance(true, Element) and true.is_zero:
+        return value, value.scaled(true)
+    if isinstance(true, ExactMatrix) and isinstance(value, Element) and value.is_zero:
+        return true.scaled(value), true
+    return value, true
 
 
 def _single(value: Value) -> Value:

@@ -114,7 +114,7 @@ def _general(setting: Setting, *, wrong: bool = False) -> Iterator[tuple[Entry, 
 
     Which constants are open in one is asked as if none had a value yet.
     """
-    fresh = replace(setting, author=Author(kept=setting.author.kept))
+    fresh = replace(setting, author=Author(kept=setting.author.kept, time=setting.author.time))
     for entry in reversed(setting.author.entries):
         if entry.says in OPEN and entry.values and (wrong or entry.root is None):
             names = constants_of(entry.claim, fresh)

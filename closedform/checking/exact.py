@@ -13,6 +13,7 @@ from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.matrices import ExactMatrix, identity
 from closedform.notation.written.tree import (
     EULER,
+    INFINITY,
     Apply,
     Array,
     Constant,
@@ -34,6 +35,7 @@ from closedform.notation.written.tree import (
     Symbol,
     Transform,
     Written,
+    walk,
 )
 
 __all__ = ["HELD", "Scope", "Value", "applies", "exact"]
@@ -61,6 +63,10 @@ class Scope:
     instant: Element | None = None
     exponential: Callable[[ExactMatrix], ExactMatrix] | None = None
     size: int | None = None
+    moment: Callable[[str, int, Element | None], Value | None] | None = None
+    """Value of a function of time at an instant, on whichever interval; None is infinity."""
+    in_pieces: bool = False
+    """Whether the functions have other formulas on other intervals."""
 
     def with_symbols(self, more: Mapping[str, Value]) -> Scope:
         """Return the scope with further names, which win over its own."""
@@ -166,9 +172,16 @@ def _jet(node: Jet, scope: Scope) -> Value:
             known = _entrywise(known, Element.derivative)
     if node.at is None or node.at == Symbol(scope.time):
         return known
-    at = exact(node.at, scope)
+    endless = node.at == INFINITY
+    at = None if endless else exact(node.at, scope)
     if isinstance(at, ExactMatrix):
         raise NotJudgedError("an instant is a number, not a matrix")
+    if scope.moment is not None and (at is None or at.is_constant):
+        value = scope.moment(node.name, node.order, at)
+        if value is not None:
+            return value
+    if at is None:
+        return _entrywise(known, _limit)
     return _entrywise(known, lambda value: value.at(at))
 
 
@@ -385,6 +398,8 @@ def _integral(body: Written, variable: str, lower: Written, upper: Written, scop
     The variable takes the time's place; where the time itself occurs in the body, it is a
     constant meanwhile.
     """
+    if scope.in_pieces and any(isinstance(node, Jet) for node in walk(body)):
+        raise NotJudgedError("an integral runs over functions that are given by pieces")
     field_, held = scope.field, f"{HELD} {scope.time}"
     inner = replace(scope, time=variable, instant=None)
     inner = inner.with_symbols({scope.time: field_.name(held)})
@@ -394,6 +409,9 @@ def _integral(body: Written, variable: str, lower: Written, upper: Written, scop
     antiderivative = value.integral()
     ends = []
     for end in (upper, lower):
+        if end == INFINITY:
+            ends.append(_limit(antiderivative))
+            continue
         at = exact(end, scope)
         if isinstance(at, ExactMatrix):
             raise NotJudgedError("a bound of an integral is a number, not a matrix")

@@ -19,9 +19,9 @@ from closedform.checking.constants import (
     rests_on_constants,
 )
 from closedform.checking.errors import NotJudgedError, UnknownNameError
+from closedform.checking.judge_equations import judge_equation
 from closedform.checking.judge_functions import (
     judge_block_exponential,
-    judge_equation,
     judge_homogeneous,
     judge_particular,
     judge_resolvent,
@@ -53,7 +53,7 @@ from closedform.checking.naming import used_names
 from closedform.checking.order import is_order, judge_order
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.signs import both_signs
-from closedform.notation.written.tree import Symbol, Written, walk
+from closedform.notation.written.tree import Jet, Symbol, Transform, Written, walk
 
 __all__ = ["Judgement", "judge", "judged", "stated"]
 
@@ -231,10 +231,14 @@ def _named(claim: Claim, author: Author) -> list[tuple[str, Written]]:
     for group in claim.groups:
         if not group.values:
             continue
-        value = next((v for v in group.values if not has_decimals(v)), group.values[-1])
+        closed = [v for v in group.values if not any(isinstance(n, Transform) for n in walk(v))]
+        closed = closed or [group.values[-1]]
+        value = next((v for v in closed if not has_decimals(v)), closed[-1])
         opened = author.put_in(value)
         several = both_signs(opened)
         for name in group.names:
+            if isinstance(name, Jet) and not name.order and name.at in (None, Symbol(author.time)):
+                found.append((name.name, opened))
             if not isinstance(name, Symbol):
                 continue
             base, index = base_and_indices(name.name)

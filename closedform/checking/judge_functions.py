@@ -4,9 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Sequence
 from dataclasses import replace
-from fractions import Fraction
 from functools import partial
-from itertools import pairwise
 from typing import Protocol
 
 from flint import acb, arb
@@ -16,7 +14,7 @@ from closedform.checking.ansatz import Fit, fit, rank_of
 from closedform.checking.claim import Claim
 from closedform.checking.compare import has_decimals
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import Scope, Value, applies, exact
+from closedform.checking.exact import Value, applies, exact
 from closedform.checking.exponential import matrix_exponential
 from closedform.checking.ground import SPECTRAL, Ground, Stretch
 from closedform.checking.judge_vectors import (
@@ -34,11 +32,11 @@ from closedform.checking.matrices import (
 )
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.similar import is_block_form, is_similar
+from closedform.checking.transforms import laplace, laplace_in_pieces
 from closedform.checking.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (
     Array,
-    Jet,
     Literal,
     Power,
     Range,
@@ -51,7 +49,6 @@ __all__ = [
     "constants_of",
     "free_residual",
     "judge_block_exponential",
-    "judge_equation",
     "judge_homogeneous",
     "judge_particular",
     "judge_resolvent",
@@ -61,6 +58,7 @@ __all__ = [
     "judge_transition",
     "laplace",
     "solution_value",
+    "stretches_meant",
 ]
 
 
@@ -201,7 +199,7 @@ def _on_stretches(
 ) -> Finding:
     """Judge the members of a claim on every interval to which the line applies."""
     findings = []
-    for stretch in _stretches(claim, setting):
+    for stretch in stretches_meant(claim, setting):
         inside = replace(setting, ground=setting.ground.within(stretch))
         findings.append(held_against(claim, inside, partial(true, stretch=stretch), right))
     worst = next((f for f in findings if not f.passes), None)
@@ -211,7 +209,7 @@ def _on_stretches(
     return digits or findings[0]
 
 
-def _stretches(claim: Claim, setting: Setting) -> Iterator[Stretch]:
+def stretches_meant(claim: Claim, setting: Setting) -> Iterator[Stretch]:
     """Yield the intervals that the conditions beside a line leave; all if there are none."""
     ground = setting.ground
     ranges = [r for statement in claim.statements for r in statement.conditions]
@@ -281,7 +279,7 @@ def _modulo_free(claim: Claim, setting: Setting, *, whole: bool, constants: list
     characteristic polynomial in d/dt, as every component of a free response is.
     """
     last: Finding | None = None
-    for stretch in _stretches(claim, setting):
+    for stretch in stretches_meant(claim, setting):
         for member in claim.values:
             opened = setting.opened(member)
             ground = setting.ground_for(opened).within(stretch)
@@ -483,14 +481,14 @@ def _steady_value(name: str, ground: Ground) -> Element:
 
 
 def judge_transform(claim: Claim, setting: Setting) -> Finding:
-    """Judge the Laplace transform of a solution that is one formula from the time 0 on."""
+    """Judge the Laplace transform of a solution from the time 0 on, in pieces or in one."""
     ground = setting.ground
-    if len(ground.stretches) != 1 or not ground.stretches[0].start.is_zero:
+    if not ground.stretches[0].start.is_zero:
         raise NotJudgedError("the transform is held against a solution that begins at 0 only")
 
     def true(ground: Ground) -> Value:
-        value = solution_value(claim.subject, ground, ground.stretches[0])
-        return _entrywise(value, laplace)
+        values = [solution_value(claim.subject, ground, stretch) for stretch in ground.stretches]
+        return laplace_in_pieces(values, ground)
 
     def prepare(member: Written) -> Written:
         known = ground.facts.names
@@ -549,30 +547,6 @@ def _open_member(
 TRANSFORM_NAMES = {SPECTRAL: "s"}
 
 
-def laplace(value: Element) -> Element:
-    """Return the Laplace transform of an exponential polynomial, in the spectral variable.
-
-    Source: t^k e^(lambda t) goes to k!/(s - lambda)^(k + 1); R. V. Churchill, Operational
-    Mathematics (1972), table of transforms.
-    """
-    field = value.field
-    s, total = field.name(SPECTRAL), field.zero
-    terms = value.terms()
-    if terms is None:
-        raise NotJudgedError("the transform of this function is not known")
-    for rate, constant, power, coefficient in terms:
-        factorial = 1
-        for k in range(2, power + 1):
-            factorial *= k
-        weight = coefficient * field.exp(constant) * field.number(Fraction(factorial))
-        total = total + weight / (s - rate) ** (power + 1)
-    return total
-
-
-def _entrywise(value: Value, change: Callable[[Element], Element]) -> Value:
-    return value.mapped(change) if isinstance(value, ExactMatrix) else change(value)
-
-
 def judge_resolvent(claim: Claim, setting: Setting) -> Finding:
     """Judge (s I - A)^(-1), whatever its variable is called."""
 
@@ -587,71 +561,3 @@ def judge_resolvent(claim: Claim, setting: Setting) -> Finding:
     return held_against(
         claim, setting, true, lambda g: written_back(true(g), TRANSFORM_NAMES), prepare=prepare
     )
-
-
-def judge_equation(claim: Claim, setting: Setting) -> Finding:
-    """Judge an equation between unknowns, their derivatives and the inputs: one of the model's.
-
-    The derivatives are expressed by the states, x' = A x + B u, and the equation has to hold
-    for every state.
-    """
-    ground, note = setting.ground_for(*map(setting.opened, claim.values)), ""
-    for stretch in _stretches(claim, setting):
-        inside = ground.within(stretch)
-        jets = _jets(inside, stretch)
-        scope = replace(setting.scope_of(inside), jets=jets)
-        scope = scope.with_symbols({name: v for (name, order), v in jets.items() if order == 0})
-        outputs = _names_outputs(claim, setting)
-        if outputs or not _agree(claim, setting, scope):
-            if (_has_derivatives(claim) and not outputs) or not _agree(
-                claim, setting, setting.scope_of(inside)
-            ):
-                return Finding("fails", "it does not follow from the model")
-            note = "it holds along this solution, not for every state"
-    return Finding("holds", notes=(note,) if note else ())
-
-
-def _agree(claim: Claim, setting: Setting, scope: Scope) -> bool:
-    """Whether the members of a chain have equal values."""
-    sides = [exact(setting.opened(member), scope) for member in claim.values]
-    return all(_minus(one, other).is_zero for one, other in pairwise(sides))
-
-
-def _names_outputs(claim: Claim, setting: Setting) -> bool:
-    """Whether outputs or eliminated unknowns occur, which no state is free for."""
-    truth = setting.ground.truth
-    states = {name for name, _ in truth.jets} | set(truth.inputs)
-    found = {n.name for v in claim.values for n in walk(v) if isinstance(n, Jet)}
-    return bool((found & setting.ground.facts.varying) - states)
-
-
-def _has_derivatives(claim: Claim) -> bool:
-    return any(
-        isinstance(node, Jet) and node.order for member in claim.values for node in walk(member)
-    )
-
-
-def _jets(ground: Ground, stretch: Stretch) -> dict[tuple[str, int], Value]:
-    """Return states as free names, and the derivatives that follow as functions of these.
-
-    The column of all states has the names that it customarily goes by.
-    """
-    field, truth = ground.field, ground.truth
-    free = [field.name(f"state {k}") for k in range(ground.size)]
-    drive = ground.drive(stretch)
-    rates = []
-    for k, row in enumerate(ground.matrix.rows):
-        total = drive[k] if drive else field.zero
-        for entry, state in zip(row, free, strict=True):
-            total = total + entry * state
-        rates.append(total)
-    jets: dict[tuple[str, int], Value] = dict(zip(truth.jets, free, strict=True))
-    for name in ground.facts.vector_names:
-        jets[name, 0], jets[name, 1] = column(field, free), column(field, rates)
-    for (name, order), rate in zip(truth.jets, rates, strict=True):
-        jets.setdefault((name, order + 1), rate)
-    for name in truth.inputs:
-        value = ground.input(name, stretch)
-        if value is not None:
-            jets[name, 0] = value
-    return jets

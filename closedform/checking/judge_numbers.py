@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 from fractions import Fraction
 
 from flint import acb
@@ -15,13 +16,13 @@ from closedform.checking.definitions import quantities_meant, require_definition
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.exact import Value, exact
 from closedform.checking.ground import Ground
-from closedform.checking.judge_functions import CONSTANTS, solution_value
+from closedform.checking.judge_functions import CONSTANTS, solution_value, stretches_meant
 from closedform.checking.judging import held_against
 from closedform.checking.left_sides import base_and_indices
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Symbol, Written, walk
+from closedform.notation.written.tree import Jet, Symbol, Written, walk
 
 __all__ = ["QUANTITIES", "judge_definition", "judge_identity", "judge_quantity", "judge_value"]
 
@@ -167,10 +168,26 @@ QUANTITIES = frozenset(
 
 
 def judge_identity(claim: Claim, setting: Setting) -> Finding:
-    """Judge a chain by itself: all its members have to be equal.
+    """Judge a chain by itself: all its members have to be equal, on every interval of time.
 
     The names in it stand for what the model and earlier lines say.
     """
+    ground = setting.ground
+    moving = any(
+        isinstance(node, Jet) or node == Symbol(ground.facts.time)
+        for value in claim.values
+        for node in walk(setting.opened(value))
+    )
+    if len(ground.stretches) == 1 or not moving:
+        return _identity(claim, setting)
+    findings = [
+        _identity(claim, replace(setting, ground=ground.within(stretch)))
+        for stretch in stretches_meant(claim, setting)
+    ]
+    return next((found for found in findings if not found.passes), findings[0])
+
+
+def _identity(claim: Claim, setting: Setting) -> Finding:
     names = list(claim.names)
     known = [name for name in names if _is_known(name, claim, setting)]
     members = (*known, *claim.values)

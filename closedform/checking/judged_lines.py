@@ -74,7 +74,7 @@ def judged_lines(lines: Sequence[SourceLine], truth: Truth, grounds: Grounds) ->
     """
     ground = grounds.of(truth)
     read = [_read(line, ground.facts) for line in lines]
-    author = Author(kept=ground.facts.names)
+    author = Author(kept=ground.facts.names, time=ground.facts.time)
     found = []
     for place, (as_read, claims) in enumerate(read):
         line = as_read

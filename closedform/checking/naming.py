@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from closedform.checking.claim import Claim
 from closedform.checking.facts import Facts
 from closedform.checking.left_sides import base_and_indices
-from closedform.notation.written.tree import Apply, Symbol, walk
+from closedform.notation.written.tree import Apply, Jet, Symbol, walk
 
 __all__ = ["given_names", "in_order", "used_names"]
 
@@ -23,6 +23,8 @@ def given_names(claim: Claim, facts: Facts) -> frozenset[str]:
             case Symbol(own):
                 base, index = base_and_indices(own)
                 found |= {own, *(f"{base}_{part}" for part in index.split("_") if index)}
+            case Jet(own, 0):
+                found.add(own)
             case Apply("tan" | "sin" | "cos", (Symbol(own),)):
                 found.add(own)
     return frozenset(found - facts.names)
@@ -31,7 +33,10 @@ def given_names(claim: Claim, facts: Facts) -> frozenset[str]:
 def used_names(claim: Claim) -> frozenset[str]:
     """Return the names in the values of a claim."""
     return frozenset(
-        node.name for value in claim.values for node in walk(value) if isinstance(node, Symbol)
+        node.name
+        for value in claim.values
+        for node in walk(value)
+        if isinstance(node, Symbol | Jet)
     )
 
 

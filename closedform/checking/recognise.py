@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import replace
 from fractions import Fraction
 
@@ -16,11 +16,14 @@ from closedform.notation.written.tree import (
     Apply,
     Array,
     Identity,
+    Integral,
     Jet,
+    Limit,
     Literal,
     Statement,
     Symbol,
     Written,
+    children,
     walk,
 )
 
@@ -217,6 +220,8 @@ def _is_name(node: Written) -> bool:
 def _by_shape(statement: Statement, facts: Facts) -> tuple[str, tuple[Written, ...]]:
     """Return what a statement without a telling left side claims, and its names."""
     members = statement.members
+    if _is_new_name(members[0], facts) and len(members) > 1 and members[-1] != ZERO:
+        return "definition", members[:1]
     if _has_jets(members, facts):
         return ("equation" if len(members) > 1 else "identity"), ()
     polynomials = members[:-1] if members[-1] == ZERO else members
@@ -230,6 +235,17 @@ def _by_shape(statement: Statement, facts: Facts) -> tuple[str, tuple[Written, .
     if isinstance(first, Jet) and len(members) > 1 and first.name not in facts.varying:
         return "definition", members[:1]
     return "identity", ()
+
+
+def _is_new_name(node: Written, facts: Facts) -> bool:
+    """Whether a member is a name of the author's, of a number or a function of time."""
+    match node:
+        case Symbol(name):
+            return name not in facts.names and not facts.has_vector(name)
+        case Jet(name, 0, at):
+            known = name in facts.names or facts.has_vector(name)
+            return not known and at in (None, Symbol(facts.time))
+    return False
 
 
 def _is_column(value: Written, facts: Facts) -> bool:
@@ -266,8 +282,16 @@ def _has_jets(members: Sequence[Written], facts: Facts) -> bool:
         and node.at is None
         and (node.name in facts.varying or facts.has_vector(node.name))
         for member in members
-        for node in walk(member)
+        for node in _moving_parts(member)
     )
+
+
+def _moving_parts(member: Written) -> Iterator[Written]:
+    """Yield the parts of a formula, but of definite integrals and limits none."""
+    yield member
+    fixed = isinstance(member, Limit) or (isinstance(member, Integral) and member.lower is not None)
+    for part in () if fixed else children(member):
+        yield from _moving_parts(part)
 
 
 def _in_time(members: Sequence[Written], facts: Facts) -> bool:

@@ -84,6 +84,8 @@ class Setting:
             ground.scope,
             symbols=symbols,
             jets=jets,
+            moment=jets.at,
+            in_pieces=len(ground.stretches) > 1,
             exponential=partial(matrix_exponential, candidates=ground.eigenvalues),
         )
 
