@@ -47,3 +47,26 @@ def test_one_model_is_written_the_same_alone_and_among_others(
     assert done.returncode == 0
     for path in tmp_path.iterdir():
         assert path.read_bytes() == first[path.name]
+
+
+DERIVATIONS = [
+    path
+    for path in sorted((ROOT / "templates" / "starters" / "derivations").iterdir())
+    if "_model" not in path.stem
+]
+
+
+def reports(folder: Path, mood: dict[str, str]) -> dict[str, bytes]:
+    done = run("check", *DERIVATIONS, "--junit", "--into", "checked", cwd=folder, **mood)
+    assert done.returncode == 1, done.stderr
+    return {path.name: path.read_bytes() for path in (folder / "checked").iterdir()}
+
+
+def test_reports_on_derivations_are_the_same_in_every_environment(tmp_path: Path) -> None:
+    found = []
+    for mood in MOODS:
+        folder = tmp_path / mood["PYTHONHASHSEED"]
+        folder.mkdir()
+        found.append(reports(folder, mood))
+    assert len(found[0]) == 3 * len(DERIVATIONS)
+    assert [name for name in found[0] if len({once[name] for once in found}) > 1] == []
