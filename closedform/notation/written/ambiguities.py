@@ -111,13 +111,14 @@ def found_choices(
     names: Names,
     given: Sequence[tuple[tuple[Token, ...], tuple[Token, ...]]],
     logs: Sequence[tuple[int, int]],
+    text: str,
 ) -> list[Choice]:
     """Return the places of settled tokens that may be read in another way.
 
     `given` are those that were found on the way, `logs` where there is a logarithm without
     base.  A slash whose likelier reading takes two factors below gets a group in `tokens`.
     """
-    preferred(tokens, names)
+    preferred(tokens, names, text)
     if len(tokens) > LARGEST:
         return []
     return list(islice(_choices(tokens, names, given, logs), MOST))

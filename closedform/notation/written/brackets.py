@@ -86,7 +86,7 @@ def decimals(tokens: list[Token], text: str) -> list[Token]:
 
 def _lists(tokens: list[Token], opening: int, closing: int, commas: int) -> bool:
     """Tell whether a bracket holds a list of numbers, not one number with a decimal comma."""
-    if tokens[opening].type != "OPEN":
+    if tokens[opening].type != "OPEN" or any(t.type == "SEMI" for t in tokens[opening:closing]):
         return False
     before = tokens[opening - 1] if opening else None
     if tokens[opening].value == "{" or commas > 1:

@@ -18,8 +18,10 @@ from closedform.notation.written.building_parts import (
     application,
     differentiated,
     folded,
+    indexed,
     only_name,
     part_of,
+    range_of,
     with_signs,
 )
 from closedform.notation.written.tree import (
@@ -38,12 +40,10 @@ from closedform.notation.written.tree import (
     Power,
     Product,
     Quotient,
-    Range,
     Sum,
     SumOver,
     Symbol,
     Transform,
-    Written,
     changed,
 )
 
@@ -111,6 +111,12 @@ class Building(Transformer[Token, Any]):
         last = children[-1]
         argument = folded(last) if isinstance(last, Chain) else last
         return application(children[0].value, [argument], exponent)
+
+    def applied_signed(self, children: list[Any]) -> Part:
+        argument = with_signs((children[-2],), folded(children[-1]))
+        return application(
+            children[0].value, [argument], children[2] if len(children) > 3 else None
+        )
 
     def called(self, children: list[Any]) -> Part:
         exponent = children[2] if len(children) == 4 else None
@@ -217,7 +223,7 @@ class Building(Transformer[Token, Any]):
                 "only the last line of cases may go without a condition; say when each holds"
             )
         built = tuple(
-            (part.node, None if found is None else tuple(map(_range, found)))
+            (part.node, None if found is None else tuple(map(range_of, found)))
             for part, found in pieces
         )
         inside = [part for part, _ in pieces]
@@ -244,7 +250,7 @@ class Building(Transformer[Token, Any]):
         body: Part = children[1]
         match children[0]:
             case (str(variable), Part() as lower, Part() as upper):
-                summand = changed(body.node, partial(_indexed, variable))
+                summand = changed(body.node, partial(indexed, variable))
                 node = SumOver(summand, variable, lower.node, upper.node)
                 return part_of(node, body, lower, upper)
             case (str(variable), Part() as point):
@@ -283,14 +289,3 @@ class Building(Transformer[Token, Any]):
         if isinstance(node, Jet) and node.at is None and name == time:
             return part_of(Jet(node.name, node.order, at), body, point)
         return part_of(Evaluated(node, name, at), body, point)
-
-
-def _indexed(variable: str, node: Written) -> Written | None:
-    """Return the variable of a sum where it was read as the imaginary unit or a function."""
-    if (variable == "i" and node == IMAGINARY) or node == Jet(variable):
-        return Symbol(variable)
-    return None
-
-
-def _range(part: Part) -> Range:
-    return Range(part.members, part.relations)

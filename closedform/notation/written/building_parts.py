@@ -6,6 +6,7 @@ from dataclasses import dataclass, field
 from fractions import Fraction
 
 from closedform.notation.written.tree import (
+    IMAGINARY,
     Apply,
     Derivative,
     Jet,
@@ -15,6 +16,7 @@ from closedform.notation.written.tree import (
     Power,
     Product,
     Quotient,
+    Range,
     Symbol,
     Written,
     walk,
@@ -28,8 +30,10 @@ __all__ = [
     "application",
     "differentiated",
     "folded",
+    "indexed",
     "only_name",
     "part_of",
+    "range_of",
     "with_signs",
 ]
 
@@ -137,3 +141,15 @@ def _product(factors: list[Part]) -> Part:
     if len(factors) == 1:
         return factors[0]
     return part_of(Product(tuple(factor.node for factor in factors)), *factors)
+
+
+def indexed(variable: str, node: Written) -> Written | None:
+    """Return the variable of a sum where it was read as the imaginary unit or a function."""
+    if (variable == "i" and node == IMAGINARY) or node == Jet(variable):
+        return Symbol(variable)
+    return None
+
+
+def range_of(part: Part) -> Range:
+    """Return a chain of comparisons as a range."""
+    return Range(part.members, part.relations)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from fractions import Fraction
 
 from lark import Token
 
@@ -108,6 +109,33 @@ def _derivative(
     return [opening, head, opening, *inside, closing, closing]
 
 
+def _lifted(tokens: list[Token], first: int, partners: dict[int, int]) -> list[Token]:
+    """Return the tokens from an integrand on, with d and the variable out of a fraction, if so."""
+    at = first
+    while at < len(tokens) and tokens[at].type != "FRACTION" and tokens[at].type not in _ENDS:
+        at = partners[at] + 1 if at in partners else at + 1
+    if at >= len(tokens) or tokens[at].type != "FRACTION":
+        return []
+    close = partners[at + 1]
+    places = [
+        k
+        for k in range(at + 2, close - 1)
+        if _is_d(tokens[k]) and symbol_name(tokens[k + 1]) and (k + 2 == close or k == at + 2)
+    ]
+    if len(places) != 1:
+        return []
+    k, end = places[0], partners[close + 1] + 1
+    above = [*tokens[at + 2 : k], *tokens[k + 2 : close]]
+    if not above:
+        above = [token("NUMBER", Literal(Fraction(1)), *bounds(tokens[k]))]
+    new = token("DIFFERENTIAL", symbol_name(tokens[k + 1]), *bounds(tokens[k], tokens[k + 1]))
+    stop = end
+    while stop < len(tokens) and tokens[stop].type not in _ENDS:
+        stop = partners[stop] + 1 if stop in partners else stop + 1
+    body = [*tokens[first : at + 2], *above, *tokens[close:stop]]
+    return [*body, new, *tokens[stop:]]
+
+
 def integrals(tokens: list[Token], names: Names) -> list[Token]:
     """Return tokens where the differential that ends an integral is one token."""
     out = list(tokens)
@@ -134,6 +162,9 @@ def integrals(tokens: list[Token], names: Names) -> list[Token]:
             if _is_d(out[index]) and index + 1 < len(out) and symbol_name(out[index + 1]):
                 found.append(index)
             index = partners[index] + 1 if index in partners else index + 1
+        if not found and (lifted := _lifted(out, first, partners)):
+            out[first:] = lifted
+            continue
         if not found:
             raise StopError(
                 UnusableNotationError,

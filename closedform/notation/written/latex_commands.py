@@ -7,9 +7,10 @@ from fractions import Fraction
 from lark import Token
 
 from closedform.notation.written.grammar import token
+from closedform.notation.written.latex_annotated import LatexAnnotated
 from closedform.notation.written.latex_lexer import Raw
 from closedform.notation.written.latex_parts import CLOSING, OPENING
-from closedform.notation.written.latex_texts import UNIT_COMMANDS, LatexTexts
+from closedform.notation.written.latex_texts import UNIT_COMMANDS
 from closedform.notation.written.macros import (
     BARS,
     BIGS,
@@ -37,7 +38,7 @@ REFUSED = {
     **dict.fromkeys(("dots", "ldots", "cdots", "vdots", "ddots", "dotsc", "dotsb"), "dots"),
     **dict.fromkeys(("prod", "binom", "iint", "oint", "iiint", "bigcup"), "sign"),
     **dict.fromkeys(("langle", "rangle", "lfloor", "rfloor", "lceil", "rceil"), "bracket"),
-    **dict.fromkeys(("middle", "mathchoice", "multicolumn", "bmod", "pmod", "mod"), "sign"),
+    **dict.fromkeys(("mathchoice", "multicolumn", "bmod", "pmod", "mod"), "sign"),
 }
 REASONS = {
     "range": "it is several values; write one number",
@@ -66,12 +67,14 @@ TOKENS: dict[str, tuple[str, object]] = {
 """Commands that are one token."""
 
 
-class LatexCommands(LatexTexts):
+class LatexCommands(LatexAnnotated):
     """Reads the raw tokens of one text in full."""
 
     def command(self, at: int, end: int, font: str, out: list[Token]) -> int:
         """Add what a command stands for."""
         raw = self.raws[at]
+        if raw.text == "in" and (stop := self.number_set(at, end, out)):
+            return stop
         if raw.text in TOKENS and not raw.arguments:
             kind, value = TOKENS[raw.text]
             out.append(token(kind, value, raw.start, raw.end))
@@ -105,25 +108,18 @@ class LatexCommands(LatexTexts):
                 return self.big_operator(at, end, out)
             case "overset" | "stackrel" | "underset" | "underbrace" | "overbrace":
                 return self.annotated(at, end, font, out)
+            case "middle" if at + 1 < end and self.raws[at + 1].text == "/":
+                return self.step(at + 1, end, font, out)
             case "not" if at + 1 < end and self.raws[at + 1].text == "=":
                 out.append(token("REL", "≠", raw.start, self.raws[at + 1].end))
                 return at + 2
         return self.argumented(at, out) if raw.arguments else self.name_command(at, end, font, out)
 
-    def annotated(self, at: int, end: int, font: str, out: list[Token]) -> int:
-        """Add what has an annotation above or below it; that is left out."""
-        raw = self.raws[at]
-        low, high, behind = self.argument(at + 1, end, raw)
-        if raw.text in ("underbrace", "overbrace"):
-            behind = self.scripts(behind, end)[1]
-        else:
-            low, high, behind = self.argument(behind, end, raw)
-        out += self.sequence(low, high, font)
-        return behind
-
     def name_command(self, at: int, end: int, font: str, out: list[Token]) -> int:
         """Add a name that begins with a command: a letter, a font, an accent."""
         raw = self.raws[at]
+        if raw.text == "overline" and (stop := self.conjugate(at, end, font, out)):
+            return stop
         found, behind = self.nucleus(at, end, font)
         if found is not None:
             return self.named(found, behind, end, out)

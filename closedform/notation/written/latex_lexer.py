@@ -6,7 +6,7 @@ import re
 from dataclasses import dataclass
 
 from closedform.notation.greek import LETTERS
-from closedform.notation.written.macros import TEXTS, VERBATIM
+from closedform.notation.written.macros import MATRICES, TEXTS, VERBATIM
 from closedform.notation.written.written_errors import (
     StopError,
     UnbalancedError,
@@ -39,8 +39,8 @@ class Raw:
 
 _COMMAND = re.compile(r"\\([A-Za-z]+|.)", re.DOTALL)
 _ROW = re.compile(r"\*?(?:[ \t]*\[[ \t]*-?[0-9.]*[ \t]*[a-z\\]{2,14}\])?")
-_ENVIRONMENT = re.compile(r"[ \t]*\{([A-Za-z]+)\*?\}")
-_OPTION = re.compile(r"[ \t]*\[[^\]\[{}\\]*\]")
+_ENVIRONMENT = re.compile(r"[ \t]*\{([A-Za-z]+)(\*?)\}")
+_OPTION = re.compile(r"[ \t]*\[(?:[^\]\[{}\\]|\{[^{}\\]*\})*\]")
 _COMMENT = re.compile(r"%[^\n]*\n?[ \t]*")
 _KERN = re.compile(r"[ \t]*-?[0-9.]+[ \t]*[a-z]{2}")
 _BRACKET = re.compile(r"\s*(?:\\?[(|]|\[[^\]]*\](?!\s*\{))")
@@ -133,9 +133,8 @@ def _environment(name: str, text: str, at: int, after: int, end: int, found: lis
         )
     after = form.end()
     if name == "begin":
-        if option := _OPTION.match(
-            text, after, end if form[1] in (*WITH_COLUMNS, "aligned") else 0
-        ):
+        takes = form[1] in (*WITH_COLUMNS, "aligned") or (form[2] and form[1] in MATRICES)
+        if takes and (option := _OPTION.match(text, after, end)):
             after = option.end()
         if form[1] in WITH_COLUMNS:
             _, after = _braced(text, after, end, at, f"\\begin{{{form[1]}}}")

@@ -92,6 +92,18 @@ class LatexNames:
             at = self.partners[at] + 1 if self.raws[at].kind in ("{", "begin") else at + 1
         return at == index
 
+    def upright(self, name: Name, spelling: str) -> bool:
+        """Tell whether an upright e, i or j is set apart from a declared italic one beside it."""
+        if not name.upright or spelling not in ("e", "i", "j") or self.names.find(spelling) is None:
+            return False
+        return any(
+            raw.kind == "letter"
+            and raw.text == spelling
+            and not (self.raws[k - 1].kind == "{" and self.raws[k - 2].text in FONTS)
+            and self.raws[k - 1].text not in (*FONTS, *SWITCHES)
+            for k, raw in enumerate(self.raws)
+        )
+
     def is_letter(self, at: int) -> bool:
         """Tell whether a letter stands at an index, Latin or Greek."""
         raw = self.raws[at]

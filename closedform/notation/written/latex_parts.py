@@ -17,6 +17,7 @@ from closedform.notation.written.macros import (
     SIGNS,
     SPACES,
 )
+from closedform.notation.written.names import CONSTANTS
 from closedform.notation.written.tree import (
     EULER,
     INFINITY,
@@ -213,9 +214,12 @@ class LatexParts(LatexScripted):
         if scripts.below:
             spelling = f"{spelling}_{flattened(scripts.below)}"
         order = name.order + scripts.primes
+        if name.order and (dotted := self.names.dotted(spelling, name.order, bold=name.bold)):
+            spelling, order = dotted, scripts.primes
         italic = known("T") is None or name.bold or known(spelling) in self.names.declared.matrices
         mark = mark_of(scripts.above, transposed=italic)
-        euler = self.names.constant(spelling) == EULER
+        upright = CONSTANTS.get(spelling) if self.upright(name, spelling) else None
+        euler = (upright or self.names.constant(spelling)) == EULER
         goes_on = at < end and self.raws[at].kind in ("letter", "digit")
         if goes_on and mark in ("plus", "minus") and scripts.bare:
             self.stop(scripts.above[0], "write the whole exponent in braces")
@@ -228,7 +232,7 @@ class LatexParts(LatexScripted):
             return at
         spelling, primes, mark = self.marked(spelling, mark, bold=name.bold)
         order += primes
-        value = self.names.operand(spelling, bold=name.bold, order=order)
+        value = upright or self.names.operand(spelling, bold=name.bold, order=order)
         if isinstance(value, Symbol) and order == 0:
             value = self.names.identity(spelling, bold=name.bold) or value
         out.append(token("ATOM", value, *bounds))

@@ -119,7 +119,13 @@ class LatexSource(LatexCommands):
 
     def pieces(self, at: int, end: int) -> list[Token]:
         """Return the tokens of a piecewise value, or nothing if the lines are statements."""
-        rows = [[self.sequence(*cell) for cell in row] for row in self.rows(at, end)]
+        lines = [[self.sequence(*cell) for cell in row] for row in self.rows(at, end)]
+        rows = [
+            row[:1] + [cell for cell in row[1:] if cell]
+            if row[0]
+            else [cell for cell in row if cell]
+            for row in lines
+        ]
         if any(_equates(row[0]) or _goes_on(row[1:2]) for row in rows):
             return []
         parted = [_parted(row) for row in rows]

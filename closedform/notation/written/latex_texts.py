@@ -149,9 +149,18 @@ class LatexTexts(LatexParts):
             text = unit_text(self.raws[at:index])
             if text:
                 found, stop = text, index
-            elif self.raws[index - 1].kind != "text" and raw.text not in ("mu", "upmu"):
+            elif (
+                raw.text not in ("mu", "upmu")
+                and self.raws[index - 1].kind != "text"
+                and not self.is_prefix(at, index)
+            ):
                 break
         return found, stop
+
+    def is_prefix(self, at: int, end: int) -> bool:
+        """Tell whether all between two indices is one upright letter that may multiply a unit."""
+        letters = [raw.text for raw in self.raws[at:end] if raw.kind not in "{}"]
+        return len(letters) == 2 and letters[0] in FONTS and letters[1] in "kMGmnpµ"
 
     def words(self, at: int, end: int, font: str, out: list[Token]) -> int:
         """Add a text: a unit, a word between statements, a name, or a note."""

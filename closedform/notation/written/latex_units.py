@@ -44,6 +44,8 @@ _BARE = [
     "var",
     "bar",
     "Nm",
+    "ohm",
+    "Ohm",
 ]
 _ALONE = [
     "min",
@@ -70,8 +72,6 @@ _ALONE = [
     "Np",
     "bit",
     "B",
-    "ohm",
-    "Ohm",
     "sec",
     "s.u.",
     "atm",
@@ -116,6 +116,8 @@ _PREFIXES = (
 )
 _SYMBOLS = frozenset(prefix + unit for prefix in _PREFIXES for unit in _BARE) | frozenset(_ALONE)
 _FACTOR = re.compile(r"(?P<symbol>[^\W\d_]+|°[CF]?|%|1)(?:\^?(?P<power>[-−]?[0-9]+))?")
+_COMPACT = re.compile(r"(?<=[NVAW])(?=[smh](?![A-Za-z]))")
+"""Between two units without a gap: Ns, Vs, Nm, Wh."""
 _BETWEEN = re.compile(r"[ ·*/().]+")
 
 _WORDS = {
@@ -128,7 +130,6 @@ _WORDS = {
     "%": "%",
     **dict.fromkeys((",", ";", ":", " ", "cdot", "times", "quad", ".", "thinspace"), " "),
     **dict.fromkeys(("!", "mathrm", "text", "rm", "mathsf", "left", "right", "mathit"), ""),
-    "micro": "µ",
     "upmu": "µ",
     "upOmega": "Ω",
     "per": "/",
@@ -167,25 +168,31 @@ _NAMED = {
     "litre": "L",
     "liter": "L",
     "bar": "bar",
+    "squared": "^2",
+    "cubed": "^3",
+}
+_POWERS = {"square": "^2", "cubic": "^3"}
+"""Commands for the power of the unit behind them."""
+_PREFIX_COMMANDS = {
     "kilo": "k",
     "milli": "m",
     "mega": "M",
     "giga": "G",
     "nano": "n",
     "pico": "p",
+    "tera": "T",
     "hecto": "h",
     "centi": "c",
     "deci": "d",
-    "squared": "^2",
-    "cubed": "^3",
-    "square": "",
-    "cubic": "",
+    "deca": "da",
+    "micro": "µ",
+    "femto": "f",
 }
 
 
 def is_unit(text: str) -> bool:
     """Tell whether a text is a product of powers of units, as rad/s, N s/m or kg·m^-3."""
-    factors = [factor for factor in _BETWEEN.split(text) if factor]
+    factors = [factor for factor in _BETWEEN.split(_COMPACT.sub(" ", text)) if factor]
     forms = [_FACTOR.fullmatch(factor) for factor in factors]
     known = all(form and form["symbol"] in (*_SYMBOLS, "1") for form in forms)
     return known and any(form and form["symbol"] != "1" for form in forms)
@@ -200,25 +207,33 @@ def unit_text(raws: list[Raw]) -> str:
         above, below = unit_text(raws[1:middle]), unit_text(raws[middle:])
         return f"{above}/{below}" if above and below else ""
     words: list[str] = []
+    glued, power = False, ""
     for raw in raws:
         if raw.kind == "text":
             words.append(raw.arguments[0] if raw.arguments else "")
         elif raw.kind == "command":
-            if raw.text in _NAMED:
-                prefix = words and words[-1] in ("k", "m", "M", "G", "n", "p", "µ", "h", "c", "d")
-                joined = prefix or _NAMED[raw.text][:1] in ("^", "")
-                words.append(_NAMED[raw.text] if joined else " " + _NAMED[raw.text])
-            elif raw.text in _WORDS:
-                words.append(_WORDS[raw.text])
-            else:
+            if raw.text in _PREFIX_COMMANDS:
+                words.append(f" {_PREFIX_COMMANDS[raw.text]}")
+                glued = True
+                continue
+            if raw.text in _POWERS:
+                power = _POWERS[raw.text]
+                continue
+            named = _NAMED.get(raw.text)
+            if named is None and raw.text not in _WORDS:
                 return ""
+            joined = glued or named is None or named[:1] == "^"
+            words.append(("" if joined else " ") + (named or _WORDS[raw.text]) + power)
+            power = ""
         elif raw.kind in ("letter", "digit", "char", "^"):
             words.append(raw.text)
         elif raw.kind not in "{}":
             return ""
+        glued = False
     text = re.sub(r"\s+", " ", "".join(words).replace("~", " ")).strip()
     text = text.replace("^°", "°").replace("° ", "°") if "°" in text else text
     text = re.sub(r" ?/ ?", "/", text).strip()
+    text = f"1{text}" if text.startswith("/") else text
     return text if is_unit(text) else ""
 
 

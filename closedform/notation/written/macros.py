@@ -57,7 +57,7 @@ SPACES = {
     **dict.fromkeys(
         (":", ">", ";", " ", "medspace", "thickspace", "enspace", "enskip", "space", "/"), 1
     ),
-    **dict.fromkeys(("quad", "qquad", "hfill", "hfil"), 2),
+    **dict.fromkeys(("quad", "qquad", "hfill", "hfil", "eqno", "leqno"), 2),
 }
 """Spaces and how wide they are: 2 parts statements."""
 

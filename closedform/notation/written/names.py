@@ -17,7 +17,7 @@ from closedform.notation.written.tree import (
     Written,
 )
 
-__all__ = ["GREEK", "STEPS", "Names"]
+__all__ = ["CONSTANTS", "GREEK", "STEPS", "Names"]
 
 GREEK = frozenset(
     [
@@ -99,6 +99,18 @@ class Names:
             if key in known:
                 return known[key]
         return None
+
+    def dotted(self, spelling: str, order: int, *, bold: bool = False) -> str | None:
+        """Return the declared name that a name with dots on it is: mdot, Vdot_in.
+
+        Dots on a declared function of time are derivatives.
+        """
+        base = self.find(spelling, bold=bold)
+        if base is not None and self.varies(base):
+            return None
+        stem, low, below = spelling.partition("_")
+        found = self.find(f"{stem}{'d' * (order - 1)}dot{low}{below}")
+        return None if found is None or self.varies(found) else found
 
     def operand(self, spelling: str, *, bold: bool = False, order: int = 0) -> Written:
         """Return the symbol or function of time of a name, or the constant it customarily is.

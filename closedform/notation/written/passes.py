@@ -37,13 +37,23 @@ def settled(tokens: Sequence[Token], text: str, names: Names, choices: list[Doub
             found.append(part)
     found = _degrees(_powers_of_ten(_aligned(found)))
     found = barred(_intervals(_noted(found, text)))
-    found = decimals(found, text)
+    found = _listed(decimals(found, text))
     found = columns(found, choices)
     found = leibniz(_transforms(found), names)
     found = integrals(found, names)
     found = called(_identities(found, names), names, choices)
     _beside(found, text)
     return found
+
+
+def _listed(tokens: list[Token]) -> list[Token]:
+    """Return tokens where semicolons in brackets part items, as commas do."""
+    depth, out = 0, []
+    for part in tokens:
+        depth += part.type in ("OPEN", "GROUP_OPEN")
+        depth -= part.type in ("CLOSE", "GROUP_CLOSE")
+        out.append(token("COMMA", ";", *bounds(part)) if depth and part.type == "SEMI" else part)
+    return out
 
 
 def _aligned(tokens: list[Token]) -> list[Token]:
@@ -136,7 +146,9 @@ def _noted(tokens: list[Token], text: str) -> list[Token]:
             opened.append(len(out) - 1)
         elif part.type == "CLOSE" and opened:
             first = opened.pop()
-            if not opened and any(inner.type == "TEXT" for inner in out[first:]):
+            inside = out[first + 1 : -1]
+            counts = {inner.type for inner in inside} == {"TIMES", "NUMBER"} and len(inside) == 2
+            if not opened and (counts or any(inner.type == "TEXT" for inner in inside)):
                 place = bounds(out[first], part)
                 out[first:] = [token("TEXT", text[slice(*place)], *place)]
     return out

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 
 from lark import Token
@@ -22,10 +23,13 @@ PLAIN = frozenset(["NUMBER", "ATOM", "CALL", "FRACTION", "ROOT", "BAR_OPEN"])
 """Tokens that begin an operand which an argument without brackets may have."""
 
 
-def preferred(tokens: list[Token], names: Names) -> None:
+def preferred(tokens: list[Token], names: Names, text: str) -> None:
     """Set in tokens what the likelier reading of arguments and slashes asks for."""
     partners = pairs(tokens, "")
-    _inserted(tokens, _grouped(tokens, partners, names) + _arguments(tokens, partners, names))
+    groups = _grouped(tokens, partners, names)
+    known = {at for at, _ in groups}
+    groups += [one for one in _tight(tokens, partners, names, text) if one[0] not in known]
+    _inserted(tokens, groups + _arguments(tokens, partners, names))
 
 
 def operand_end(tokens: Sequence[Token], at: int, partners: dict[int, int]) -> int:
@@ -140,3 +144,42 @@ def _grouped(tokens: list[Token], partners: dict[int, int], names: Names) -> Ins
         if last > first and all(t.value != time for t in tokens[at + 1 : last]):
             new += _around(tokens, at + 1, last)
     return new
+
+
+def _tight(
+    tokens: Sequence[Token], partners: dict[int, int], names: Names, text: str
+) -> Insertions:
+    """Return groups round 2m in c/2m and RC in 1/RC: names without a gap, and none of them varies.
+
+    1/2m stays one half of m, and k/m x with a gap is as it stands.
+    """
+    new: Insertions = []
+    for at, part in enumerate(tokens):
+        first = at + 1
+        if part.type != "OVER" or first >= len(tokens) or not at:
+            continue
+        if tokens[first].type not in ("NUMBER", "ATOM"):
+            continue
+        numbers = tokens[first].type == "NUMBER" == tokens[at - 1].type
+        last = operand_end(tokens, first, partners)
+        while last < len(tokens) and tokens[last].type == "ATOM" and _touch(tokens, last, text):
+            last = operand_end(tokens, last, partners)
+        inside = tokens[first:last]
+        several = last > operand_end(tokens, first, partners)
+        if several and not numbers and not any(_varies(one, names) for one in inside):
+            new += _around(tokens, first, last)
+    return new
+
+
+def _touch(tokens: Sequence[Token], at: int, text: str) -> bool:
+    """Tell whether nothing stands between a token and the one before it but what ends a command."""
+    start, end = tokens[at - 1].end_pos or 0, tokens[at].start_pos or 0
+    name = re.search(r"\\[A-Za-z]+$", text[:start][-20:]) is not None
+    return start == end or (name and text[start:end] == " ")
+
+
+def _varies(part: Token, names: Names) -> bool:
+    """Tell whether a token stands for the time, for a function of it, or for no declared name."""
+    if part.type != "ATOM" or isinstance(part.value, Constant):
+        return False
+    return not isinstance(part.value, Symbol) or part.value.name not in names.declared.parameters

@@ -69,7 +69,7 @@ def read_latex(text: str, declared: Declared, *, place: Place = NOWHERE) -> Read
         if not raw:
             raise StopError(UnexpectedPartError, 0, 0, "", "a formula")  # noqa: TRY301
         tokens = settled(raw, text, names, source.choices)
-        choices = found_choices(tokens, names, source.choices, source.logs)
+        choices = found_choices(tokens, names, source.choices, source.logs, text)
         return reading_of(tokens, choices, names, text)
     except StopError as error:
         raise error.placed(place_of(text, min(error.start, len(text)), place)) from None

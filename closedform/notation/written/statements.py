@@ -9,6 +9,7 @@ from dataclasses import dataclass, field
 from lark import Token
 
 from closedform.notation.written.grammar import StoppedError, token, tree_of
+from closedform.notation.written.multiplicity import asks_for_number
 from closedform.notation.written.names import Names
 from closedform.notation.written.pairs import bounds
 from closedform.notation.written.tree import (
@@ -72,6 +73,8 @@ def statements_of(tokens: Sequence[Token], names: Names, text: str) -> tuple[Sta
             (last.items[-1] if last.items else last.tokens).extend(part)
         elif "for" in words or (drafts and _is_condition(part)):
             (drafts[-1].conditions if drafts else conditions).append(_unwrapped(part))
+        elif drafts and notes and asks_for_number(notes[-1]) and part[0].type == "NUMBER":
+            drafts[-1].notes[-1] += text[slice(*bounds(part[0], part[-1]))]
         elif drafts and "SPACE" in kinds and _is_number(part):
             drafts[-1].notes.append(text[slice(*bounds(part[0], part[-1]))])
         elif drafts and _lists(drafts[-1], kinds, words, part):
@@ -187,6 +190,12 @@ def _lists(draft: Draft, kinds: set[str], words: set[str], part: list[Token]) ->
     )
 
 
+def _counts(condition: list[Token], names: Names) -> bool:
+    """Tell whether a condition says how often a value counts: m = 2."""
+    kinds = [one.type for one in condition] == ["ATOM", "REL", "NUMBER"]
+    return kinds and condition[0].value == Symbol("m") and names.find("m") is None
+
+
 def _statement(draft: Draft, names: Names, text: str) -> Statement:
     unit, chain = _without_units(draft.tokens)
     members, relations = _tree(chain, text)
@@ -199,6 +208,9 @@ def _statement(draft: Draft, names: Names, text: str) -> Statement:
         members = (*members[:-1], Listing(tuple(items)))
     conditions = []
     for condition in draft.conditions:
+        if _counts(condition, names):
+            draft.notes.append(text[slice(*bounds(condition[0], condition[-1]))])
+            continue
         _, rest = _without_units(condition)
         found, signs = _tree(rest, text)
         if signs:

@@ -15,6 +15,7 @@ from typing import Any
 
 import sympy
 
+from closedform.notation.written.multiplicity import multiplicity_of
 from closedform.notation.written.sympy_maker import Maker, Sizes
 from closedform.notation.written.sympy_names import RELATIONS
 from closedform.notation.written.tree import (
@@ -32,7 +33,6 @@ from closedform.notation.written.tree import (
 __all__ = ["sympy_eigenvalues", "sympy_matrix", "sympy_of", "sympy_value"]
 
 NOBODY = Declared()
-TIMES_IN_WORDS = {"double": 2, "twice": 2, "triple": 3, "repeated": 2, "simple": 1}
 
 
 def sympy_of(
@@ -89,21 +89,13 @@ def _listed(statement: Statement, declared: Declared) -> list[Any]:
     both = _both(value, declared, {})
     values = both if isinstance(both, list) else [both]
     names = [m.name for m in members[:-1] if isinstance(m, Symbol)]
-    count = max(sum(map(_indices, names)) // len(values), _noted(statement.note), 1)
+    count = max(sum(map(_indices, names)) // len(values), multiplicity_of(statement.note), 1)
     return values * count
 
 
 def _indices(name: str) -> int:
     """Return how many numbers a name has behind it, one at least: lambda_1_2 has two."""
     return max(1, len(re.findall(r"(?<=_)[0-9]+(?=_|$)", name)))
-
-
-def _noted(note: str) -> int:
-    """Return the multiplicity that a note tells, 0 if none."""
-    number = re.search(r"[0-9]+", note)
-    if number and re.search("mult|fold|times", note):
-        return int(number[0])
-    return max((n for word, n in TIMES_IN_WORDS.items() if word in note), default=0)
 
 
 def _chain(statement: Statement, declared: Declared, sizes: Sizes) -> Any:

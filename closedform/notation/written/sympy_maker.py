@@ -113,7 +113,7 @@ class Maker:
                 value = sympy.Subs(made, name, self.of(at_))
                 return value if lower is None else value - sympy.Subs(made, name, self.of(lower))
             case Derivative(body, variable, order):
-                return sympy.Derivative(self.of(body), (self._name(variable), order))
+                return _derived(self.of(body), (self._name(variable), order))
         raise ValueError(f"no SymPy form of {type(node).__name__}")
 
     def _name(self, name: str) -> Any:
@@ -187,6 +187,12 @@ class Maker:
 def _exponential(exponent: Any) -> Any:
     whole = isinstance(exponent, sympy.MatrixBase | sympy.MatrixExpr)
     return sympy.exp(exponent, evaluate=False) if whole else sympy.exp(exponent)
+
+
+def _derived(made: Any, by: tuple[Any, int]) -> Any:
+    if isinstance(made, sympy.MatrixBase):
+        return made.applyfunc(lambda entry: sympy.Derivative(entry, by))
+    return sympy.Derivative(made, by)
 
 
 def _characteristic(node: Written) -> str:

@@ -9,11 +9,22 @@ from fractions import Fraction
 from closedform.notation.reader import LARGEST_EXPONENT, MOST_DIGITS
 from closedform.notation.written.tree import Literal
 
-__all__ = ["MINUS", "NUMBER", "TEN", "THOUSANDS", "is_bounded", "listing_commas", "literal"]
+__all__ = [
+    "MILLE",
+    "MINUS",
+    "NUMBER",
+    "TEN",
+    "THOUSANDS",
+    "is_bounded",
+    "listing_commas",
+    "literal",
+]
 
 MINUS = "[-−–]"
 NUMBER = re.compile(r"(?:[0-9]+(?:\.[0-9]*)?|\.[0-9]+)(?:[eE][+-]?[0-9]+(?![0-9.]))?")
 THOUSANDS = re.compile(r"[0-9]{1,3}(?:[ \u00a0\u2009\u202f][0-9]{3})+(?![0-9])")
+MILLE = re.compile(r"(?<![0-9.,])[1-9][0-9]{0,2}(?:,[0-9]{3})+\.[0-9]+(?![0-9.,])")
+"""Thousands parted by commas, if a decimal point makes that sure."""
 TEN = re.compile(
     rf"\s*[*×·⋅x]\s*10\s*(?:(?:\^|\*\*)\s*(?P<b>[({{]?)\s*(?P<n>(?:{MINUS}|\+)?[0-9]{{1,4}})\s*"
     r"(?(b)[)}]?)|(?P<s>[⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]{1,3}))(?![0-9.])"

@@ -6,6 +6,7 @@ import re
 from collections.abc import Iterator
 from dataclasses import dataclass
 
+from closedform.notation.written.multiplicity import is_multiplicity
 from closedform.notation.written.tree import Declared
 from closedform.notation.written.typed_places import Signs, split_at
 from closedform.notation.written.typed_signs import spelled_out
@@ -17,7 +18,9 @@ JOINING = frozenset({"REL", "PLUS", "MINUS", "PLUS_MINUS", "MINUS_PLUS", "TIMES"
 FILLERS = frozenset({"so", "thus", "hence", "therefore", "then", "also", "with", "that", "is"})
 LABELS = frozenset({"eigenvalue", "eigenvalues", "root", "roots", "pole", "poles"})
 NOTE = re.compile(
-    r"(?:double|twice|triple|repeated|simple|multiplicity|mult\.?|\d[- ]?fold|\(?algebraic)[^;=]*",
+    r"(?:double|twice|triple|repeated|simple|(?:with )?multiplicity|mult\.?|\d[- ]?fold"
+    r"|\(?algebraic|doppelt|(?:ein|zwei|drei|vier)fach"
+    r"|(?:mit (?:der )?)?vielfachheit)[^;=]*",
     re.IGNORECASE,
 )
 
@@ -113,7 +116,8 @@ class Parting:
                 notes.append(self.signs.text[sign.start : self._last(stop)])
                 return begin, k, " ".join(notes)
         k = self.signs.pairs.get(stop - 1, stop) if stop > begin else stop
-        if begin < k < stop and self.signs.all[k].spaced and self._is_prose(k + 1, stop - 1):
+        beside = begin < k < stop and self.signs.all[k].spaced
+        if beside and (self._is_prose(k + 1, stop - 1) or self._counts(k, stop)):
             notes.append(self.signs.inside(k, stop))
             stop = k
         return begin, stop, " ".join(notes)
@@ -137,10 +141,17 @@ class Parting:
         words = re.findall(r"[^\W\d_]{3,}", text)
         plain = re.fullmatch(r"[^\W_]+(?:[ -][^\W_]+)*\.?", text)
         strange = all(
-            self.signs.all[k].kind not in ("FUNCTION", "POWER") for k in range(begin, stop)
+            self.signs.all[k].kind not in ("FUNCTION", "POWER")
+            or self.signs.inside(k, k + 1) in ("step", "impulse", "real", "root", "sign")
+            for k in range(begin, stop)
         )
         unknown = [w for w in words if spelled_out(w)[0] not in self.declared.names]
         return bool(plain and unknown and strange and len(unknown) == len(words))
+
+    def _counts(self, k: int, stop: int) -> bool:
+        """Whether a bracket says how often the value before it counts: (2x), (3-fold)."""
+        free = not any(self._is_declared(m) for m in range(k, stop))
+        return free and is_multiplicity(self.signs.inside(k + 1, stop - 1))
 
     def _with_conditions(self, start: int, stop: int, note: str) -> Iterator[Chunk]:
         """Yield a stretch with its conditions apart; `a if c else b` gives two."""

@@ -10,6 +10,7 @@ from fractions import Fraction
 from closedform.notation.reader import LARGEST_EXPONENT, MOST_DIGITS
 from closedform.notation.written.tree import EULER, Declared, Jet, Literal
 from closedform.notation.written.typed_numbers import (
+    MILLE,
     MINUS,
     NUMBER,
     TEN,
@@ -28,6 +29,7 @@ from closedform.notation.written.typed_signs import (
     is_letter,
     is_part_of_word,
     spelled_out,
+    why_stray,
 )
 from closedform.notation.written.typed_words import FUNCTION_WORDS, Piece, Words
 
@@ -36,6 +38,7 @@ __all__ = ["Lexeme", "Scanner", "StrayError"]
 POWER_OF_D = r"(?:(?:\^|\*\*)?\s*\(?\s*([1-9])\s*\)?|([²³⁴]))?"
 INDICES = re.compile(r"(?:,\s?[0-9₀-₉])+(?=\s*(?:[=≈~∈]|:=))")
 LABEL = re.compile(r"\{(?P<inside>[A-Za-z0-9, ]+)\}")
+COMMENT = re.compile(r"#\s*(?:[^\W\d_]{2,}|\n|$)")
 SIGNS = sorted({*OPERATORS, *RELATIONS}, key=lambda sign: (-len(sign), sign))
 SIGN = re.compile("|".join(map(re.escape, SIGNS)))
 KEYWORDS = {
@@ -99,9 +102,12 @@ class Scanner:
                     found.append(Lexeme("NEWLINE", "\n", at, at + 1, spaced))
                 at, spaced = at + 1, True
                 continue
+            if COMMENT.match(self.text, at):
+                at = (self.text.find("\n", at) + 1 or len(self.text) + 1) - 1
+                continue
             new = list(self._at(at, found))
             if not new:
-                raise StrayError(at, sign, _why_stray(sign))
+                raise StrayError(at, sign, why_stray(sign))
             found.append(Lexeme(new[0].kind, new[0].value, at, new[0].end, spaced, new[0].word))
             found += new[1:]
             at, spaced = new[-1].end, False
@@ -162,6 +168,10 @@ class Scanner:
         if grouped and not self._in_matrix(at) and is_bounded(grouped[0]):
             digits = re.sub(r"\D", "", grouped[0])
             return Lexeme("NUMBER", literal(digits, 0, at, grouped.end()), at, grouped.end())
+        if (sure := MILLE.match(text, at)) and not self._in_matrix(at) and is_bounded(sure[0]):
+            return Lexeme(
+                "NUMBER", literal(sure[0].replace(",", ""), 0, at, sure.end()), at, sure.end()
+            )
         found = NUMBER.match(text, at)
         if found is None:
             raise StrayError(at, text[at], "a number has digits and one decimal point")
@@ -243,7 +253,7 @@ class Scanner:
         bracket = bracket or trace
         pieces = self.words.read(word, at, bracket=bracket, raised=raised)
         if pieces is None and re.fullmatch("(?:int|integral|sum|prod)(?:_.*)?", word):
-            raise StrayError(at, word, _why_stray("∫"))
+            raise StrayError(at, word, why_stray("∫"))
         if pieces is None:
             new = self.words.undeclared(word, at)
             yield Lexeme("ATOM" if spelled_out(word)[0].isascii() else "TEXT", new.node, at, end)
@@ -287,9 +297,3 @@ def _fraction(value: Fraction, at: int) -> Iterator[Lexeme]:
     yield Lexeme("OVER", "/", at, at)
     yield Lexeme("NUMBER", Literal(Fraction(value.denominator)), at, at)
     yield Lexeme("GROUP_CLOSE", "}", at + 1, at + 1)
-
-
-def _why_stray(sign: str) -> str:
-    if sign in "∫∂∑∮":
-        return "integrals and sums are not read from typed text; write the formula in LaTeX"
-    return "this sign has no meaning in typed mathematics; leave it out or write it in words"

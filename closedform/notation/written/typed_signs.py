@@ -18,6 +18,7 @@ __all__ = [
     "is_letter",
     "is_part_of_word",
     "spelled_out",
+    "why_stray",
 ]
 
 OPERATORS = {
@@ -91,3 +92,10 @@ def spelled_out(word: str) -> tuple[str, int]:
         letters += ACCENTS.get(sign) or LETTERS.get(sign, sign)
         low = False
     return letters, dots
+
+
+def why_stray(sign: str) -> str:
+    """Return what to do about a sign that means nothing."""
+    if sign in "∫∂∑∮":
+        return "integrals and sums are not read from typed text; write the formula in LaTeX"
+    return "this sign has no meaning in typed mathematics; leave it out or write it in words"

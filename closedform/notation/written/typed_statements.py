@@ -27,8 +27,7 @@ from closedform.notation.written.typed_weaving import Weaver
 
 __all__ = ["statements_of"]
 
-COMPACT = re.compile(r"(?<=[NVAW])(?=[smh](?![A-Za-z]))")
-"""Between two units that are typed without a gap: Ns, Vs, Nm, Wh."""
+RAISED = re.compile("[⁻⁰¹²³⁴⁵⁶⁷⁸⁹]+")
 COMPARING = frozenset("<≤>≥→")
 TENDING = frozenset({"tends", "goes", "approaches"})
 
@@ -105,7 +104,8 @@ class _Statements(Parting):
             why = "a condition stands behind the formula that it is for"
             raise StrayError(first.start, found, why)
         members, unit = self._without_units(chunk.start, chunk.stop)
-        self._refuse_prose(chunk.start, chunk.stop)
+        for bounds in members:
+            self._refuse_prose(*bounds)
         tokens: list[Token] = []
         for begin, stop in members:
             if tokens:
@@ -172,10 +172,11 @@ class _Statements(Parting):
             return last, ""
         value = self.signs.all[last].value
         text = self.signs.text[self.signs.all[last].end : self._last(end)].strip()
-        text = "".join(SUPERSCRIPTS.get(c, c) for c in text).strip("[]").replace("**", "^")
+        text = RAISED.sub(lambda run: "^" + "".join(map(SUPERSCRIPTS.__getitem__, run[0])), text)
+        text = text.strip("[]").replace("**", "^")
         text = text.replace("(", "").replace(")", "") if "^(" in text else text
         decimal = isinstance(value, Literal) and value.is_decimal
-        if not is_unit(COMPACT.sub(" ", text)) or text in ("°", "deg", "%", self.declared.time):
+        if not is_unit(text) or text in ("°", "deg", "%", self.declared.time):
             return last, ""
         if alone and not decimal:
             return last, ""
