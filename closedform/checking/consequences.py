@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 
 from closedform.algebra.elementary import Element, NotElementaryError
@@ -12,9 +12,15 @@ from closedform.checking.compare import compare
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Value
 from closedform.checking.exponential import eigenvalues_of, matrix_exponential
+from closedform.checking.following import (
+    by_equation,
+    by_limit,
+    by_transform,
+    with_wrong_column,
+)
 from closedform.checking.ground import SPECTRAL, Ground
 from closedform.checking.judge_spectrum import polynomial_of, roots_claimed
-from closedform.checking.matched import eigenvalues_for, eigenvectors_for
+from closedform.checking.matched import eigenvalues_for, eigenvectors_for, transformations_for
 from closedform.checking.matrices import (
     ExactMatrix,
     characteristic_coefficients,
@@ -28,6 +34,7 @@ from closedform.notation.written.tree import Symbol, walk
 __all__ = ["carried_from"]
 
 OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
+Rule = Callable[[Claim, Setting, Ground], int | None]
 MOST = 24
 """So many ways of working a line out from earlier ones are tried."""
 
@@ -54,6 +61,8 @@ def carried_from(claim: Claim, setting: Setting) -> int | None:
         return None
     opened = setting.opened(claim.values[-1])
     ground = setting.ground_for(opened)
+    if claim.at is not None and len(ground.stretches) > 1:
+        ground = _at_instant(claim, setting, ground)
     scope = setting.scope_of(ground)
     tried = 0
     for derived in _rooted(claim, setting, ground):
@@ -67,6 +76,16 @@ def carried_from(claim: Claim, setting: Setting) -> int | None:
         if found.passes:
             return derived.root
     return _special(claim, setting, ground)
+
+
+def _at_instant(claim: Claim, setting: Setting, ground: Ground) -> Ground:
+    """Return the ground on the interval in which the instant of a value lies."""
+    assert claim.at is not None  # noqa: S101  asked for before
+    at = setting.value(claim.at, ground)
+    for stretch in reversed(ground.stretches):
+        if isinstance(at, Element) and (at - stretch.start).sign() in (0, 1):
+            return ground.within(stretch)
+    return ground
 
 
 def _rooted(claim: Claim, setting: Setting, ground: Ground) -> Iterator[Derived]:
@@ -195,7 +214,7 @@ def _transitions(setting: Setting, ground: Ground) -> Iterator[Derived]:
         for e in middle or list(_own_exponentials(p, ground)):
             yield from _as_far_as_known(_product(p, e, setting, ground))
     for e in middle if not left else ():
-        for p in _own_vectors(e, ground):
+        for p in _own_vectors(e, setting, ground):
             yield from _as_far_as_known(_product(p, e, setting, ground))
     yield from _as_far_as_known(_companions(setting, ground))
 
@@ -234,9 +253,13 @@ def _own_exponentials(p: Derived, ground: Ground) -> Iterator[Derived]:
         yield Derived(matrix_exponential(diagonal(ground.field, values)))
 
 
-def _own_vectors(e: Derived, ground: Ground) -> Iterator[Derived]:
-    """Yield P for a diagonal e^(Jt) that was stated without P."""
+def _own_vectors(e: Derived, setting: Setting, ground: Ground) -> Iterator[Derived]:
+    """Yield P for an e^(Jt) that was stated without P: that of a right J, or of a diagonal one."""
     assert isinstance(e.value, ExactMatrix)  # noqa: S101
+    for form in _matrices("J", setting, ground):
+        if form.root is None and isinstance(form.value, ExactMatrix):
+            for p in transformations_for(form.value, ground):
+                yield Derived(p)
     zero = ground.field.zero
     rates = e.value.mapped(Element.derivative).mapped(lambda entry: entry.at(zero))
     size = range(ground.size)
@@ -299,6 +322,24 @@ def _solutions(subject: str, setting: Setting, ground: Ground) -> Iterator[Deriv
         if transition.value.shape == (ground.size, ground.size):
             found = transition.joined(transition.value @ initial + forced)
             yield _entry(found, subject, ground, whole)
+    limits = [entry.limit() for entry in ground.column(stretch).entries]
+    known = [entry for entry in limits if entry is not None]
+    if len(known) != ground.size:
+        return
+    rest = column(ground.field, known)
+    for transition in _of_time_constant(setting, ground):
+        if isinstance(transition.value, ExactMatrix):
+            found = transition.joined(rest + transition.value @ (initial - rest))
+            yield _entry(found, subject, ground, whole)
+
+
+def _of_time_constant(setting: Setting, ground: Ground) -> Iterator[Derived]:
+    """Yield e^(At) of a single state, as the author's time constant gives it."""
+    for entry in setting.author.all("time constant") if ground.size == 1 else ():
+        value = _value_of(entry, setting, ground)
+        if isinstance(value, Element):
+            rate = diagonal(ground.field, [-(ground.field.one / value)])
+            yield Derived(matrix_exponential(rate), entry.root)
 
 
 def _entry(found: Derived, subject: str, ground: Ground, whole: bool) -> Derived:  # noqa: FBT001
@@ -397,7 +438,23 @@ def _special(claim: Claim, setting: Setting, ground: Ground) -> int | None:
                 return _roots_of_polynomial(claim, setting, ground)
             case "eigenvector" | "generalized eigenvector":
                 return _vector_of(claim, setting, ground)
+            case "P":
+                return with_wrong_column(claim, setting, ground)
+            case "transform":
+                return by_transform(claim, setting, ground)
+            case "solution":
+                for rule in (by_transform, by_equation, by_limit):
+                    root = _tried(rule, claim, setting, ground)
+                    if root is not None:
+                        return root
         return _by_functions(claim, setting, ground) or _by_definitions(claim, setting, ground)
+    except OUTSIDE:
+        return None
+
+
+def _tried(rule: Rule, claim: Claim, setting: Setting, ground: Ground) -> int | None:
+    try:
+        return rule(claim, setting, ground)
     except OUTSIDE:
         return None
 

@@ -9,7 +9,7 @@ from closedform.algebra.elementary import Element
 from closedform.checking.ground import Ground
 from closedform.checking.matrices import ExactMatrix, identity
 
-__all__ = ["eigenvalues_for", "eigenvectors_for"]
+__all__ = ["eigenvalues_for", "eigenvectors_for", "transformations_for"]
 
 MOST_LEFT = 2
 """So many may be wrong: more can be matched in too many ways."""
@@ -37,6 +37,37 @@ def eigenvectors_for(values: Sequence[Element], ground: Ground) -> Iterator[Exac
         if all(len(kernel) == 1 for kernel in kernels):
             rows = zip(*(kernel[0].entries for kernel in kernels), strict=True)
             yield ExactMatrix(ground.field, tuple(rows))
+
+
+def transformations_for(form: ExactMatrix, ground: Ground) -> Iterator[ExactMatrix]:
+    """Yield a P with A P = P J for a J that is similar to A: a sum of all that satisfy this.
+
+    Nothing is yielded where the model is large, or that sum happens to have no inverse.
+    """
+    size, zero = ground.size, ground.field.zero
+    if size > MOST_STATES:
+        return
+    places = [(i, j) for i in range(size) for j in range(size)]
+    rows = []
+    for i, j in places:
+        row = [zero] * len(places)
+        for k in range(size):
+            row[k * size + j] = row[k * size + j] + ground.matrix.rows[i][k]
+            row[i * size + k] = row[i * size + k] - form.rows[k][j]
+        rows.append(tuple(row))
+    total = [zero] * len(places)
+    for weight, vector in enumerate(ExactMatrix(ground.field, tuple(rows)).kernel(), start=1):
+        scaled = [entry * weight for entry in vector.entries]
+        total = [one + other for one, other in zip(total, scaled, strict=True)]
+    p = ExactMatrix(
+        ground.field, tuple(tuple(total[i * size : (i + 1) * size]) for i in range(size))
+    )
+    if not p.determinant().is_zero:
+        yield p
+
+
+MOST_STATES = 4
+"""The largest model for which P is sought by n^2 linear equations."""
 
 
 def _filled(found: Sequence[Element | None], ground: Ground) -> Iterator[tuple[Element, ...]]:
