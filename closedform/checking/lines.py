@@ -2,12 +2,23 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from closedform.checking.claim import SourceLine
 from closedform.checking.facts import Facts
 from closedform.notation.written.reader import read_latex
-from closedform.notation.written.tree import IMAGINARY, Identity, Reading, Written, changed
+from closedform.notation.written.tree import (
+    IMAGINARY,
+    Identity,
+    Jet,
+    Product,
+    Reading,
+    Statement,
+    Symbol,
+    Written,
+    changed,
+    walk,
+)
 from closedform.notation.written.typed_reader import read_typed
 from closedform.notation.written.written_errors import NotReadError
 
@@ -37,9 +48,26 @@ def read_line(line: SourceLine, facts: Facts) -> ReadLine:
         reading = read(line.text, facts.declared, place=line.place)
     except NotReadError as error:
         return ReadLine(line, None, error.paragraph)
+    reading = replace(
+        reading,
+        statements=tuple(_with_current(one, facts) for one in reading.statements),
+        others=tuple(tuple(_with_current(one, facts) for one in other) for other in reading.others),
+    )
     of = _number(_stated(line.of, facts)) if line.says in VECTORS else None
     at = _stated(line.at, facts) if line.at else None
     return ReadLine(line, reading, "", of, at)
+
+
+def _with_current(statement: Statement, facts: Facts) -> Statement:
+    """Return a statement with i or i(t) on its left as a name: nobody says what the unit is."""
+    first, *rest = statement.members
+    if not rest or any(IMAGINARY in walk(member) for member in rest):
+        return statement
+    if first == IMAGINARY:
+        return replace(statement, members=(Symbol("i"), *rest))
+    if first == Product((IMAGINARY, Symbol(facts.time))):
+        return replace(statement, members=(Jet("i"), *rest))
+    return statement
 
 
 VECTORS = ("eigenvector", "generalized eigenvector")

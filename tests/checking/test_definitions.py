@@ -62,3 +62,28 @@ def test_a_numbered_name_that_a_later_line_uses_may_be_anything() -> None:
 def test_who_says_definition_gets_one() -> None:
     (verdict,) = held(TABLES, ("definition", r"\tau_1 = 12"))
     assert verdict.verdict == "holds"
+
+
+CIRCUIT = {
+    "equations": ["q'' + 2*q' + 5*q = 0"],
+    "initial": {"q": "1", "q'": "0"},
+}
+
+
+@pytest.mark.parametrize(
+    ("text", "passes"),
+    [
+        (r"i(t) = \dot q(t) = -\tfrac52 e^{-t}\sin 2t", True),
+        (r"i(t) = \dot q(t) = \tfrac52 e^{-t}\sin 2t", False),
+        (r"i = \frac{\mathrm{d}q}{\mathrm{d}t} = -\tfrac52 e^{-t}\sin 2t", True),
+        (r"i = \frac{\mathrm{d}q}{\mathrm{d}t} = -\tfrac52 e^{-t}\cos 2t", False),
+        (r"\lambda_{1,2} = -1 \pm 2i", True),
+        (r"i^2 = -1", True),
+        (r"i(-i) = 1", True),
+    ],
+)
+def test_a_current_is_a_name_on_the_left_and_the_imaginary_unit_elsewhere(
+    text: str, *, passes: bool
+) -> None:
+    (verdict,) = held(CIRCUIT, text)
+    assert verdict.verdict == ("holds" if passes else "fails"), verdict.reason
