@@ -119,6 +119,8 @@ def _vector(
         shifted = ground.matrix - unit.scaled(value)
         image = shifted @ vector
         if image.is_zero and not generalized:
+            if known is None and _is_another_again(claim, vector, setting, ground):
+                return Finding("fails", "it is a multiple of a vector with another index")
             return Finding("holds up to scale", "A v = lambda v")
         chained = generalized or not claim.stated
         if chained and not image.is_zero and (shifted.power(ground.size) @ vector).is_zero:
@@ -190,6 +192,31 @@ def _vectors(claims: Iterable[Claim], setting: Setting, ground: Ground) -> Itera
 
 
 VECTORS = ("eigenvector", "generalized eigenvector")
+
+
+def _is_another_again(claim: Claim, vector: ExactMatrix, setting: Setting, ground: Ground) -> bool:
+    """Whether a vector is a multiple of one with the same letter and another index."""
+    name = _letter_and_index(claim)
+    for entry in setting.author.all("eigenvector"):
+        other = _letter_and_index(entry.claim)
+        named = name and other and name[0] == other[0] and name[1] != other[1]
+        if not named or entry.root is not None:
+            continue
+        for own in _vectors((entry.claim,), setting, ground):
+            if own.shape == vector.shape and not own.is_zero:
+                both = ExactMatrix(ground.field, (own.entries, vector.entries))
+                if both.rank() == 1:
+                    return True
+    return False
+
+
+def _letter_and_index(claim: Claim) -> tuple[str, str] | None:
+    """Return the parts of the name of a vector, None where it has no index."""
+    name = claim.names[-1] if claim.names else None
+    if not isinstance(name, Symbol):
+        return None
+    letter, index = base_and_indices(name.name)
+    return (letter, index) if index else None
 
 
 def _eigenvalue_of(claim: Claim, setting: Setting, ground: Ground) -> Element | None:

@@ -144,6 +144,8 @@ def _left(statement: Statement, facts: Facts) -> Left | None:
     left = left_of(first, facts) if rest else None
     if left is not None and left.says in MATRICES and not any(map(_is_matrix, rest)):
         left = None
+    if left is not None and left.says in ("P", "J") and _is_of_coordinates(rest, facts):
+        left = None
     if left is not None and left.says == "eigenvalues" and _in_time(rest, facts):
         left = None
     if left is not None and left.says == "solution" and _is_equation(first, rest, facts):
@@ -180,7 +182,7 @@ def _claim(
             approximate=approximate,
             equation=ends_in_zero,
         )
-    names = _names(members, left, facts)
+    names = () if left.says == "equation" else _names(members, left, facts)
     values = members[len(names) :]
     if left.says in OF_STATES and any(_is_column(value, facts) for value in values):
         left = replace(left, subject="vector")
@@ -309,6 +311,13 @@ def _is_equation(first: Written, rest: Sequence[Written], facts: Facts) -> bool:
     names = {n.name for member in rest for n in walk(member) if isinstance(n, Symbol)}
     derived = isinstance(first, Jet) and first.order > 0
     return derived and any(facts.has_vector(name) for name in names)
+
+
+def _is_of_coordinates(rest: Sequence[Written], facts: Facts) -> bool:
+    """Whether a matrix is that of the masses or springs, of half as many rows as A has."""
+    shapes = {(len(m.rows), len(m.rows[0])) for m in rest if isinstance(m, Array)}
+    half, odd = divmod(len(facts.states), 2)
+    return not odd and shapes == {(half, half)}
 
 
 def _is_matrix(node: Written) -> bool:
