@@ -10,6 +10,7 @@ from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Value
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Setting
+from closedform.checking.similar import is_block_form
 
 __all__ = ["as_meant"]
 
@@ -35,4 +36,14 @@ def as_meant(claim: Claim, setting: Setting) -> Claim:
     other = sum(not (own - true).is_zero for own, true in pairs)
     nonzero = sum(not true.is_zero for _, true in pairs)
     near = other <= min(MOST_OTHERS, nonzero - MOST_OTHERS - 1)
-    return replace(claim, says="matrix") if near else claim
+    if not near or (other and _transforms(value, ground.matrix)):
+        return claim
+    return replace(claim, says="matrix")
+
+
+def _transforms(value: ExactMatrix, matrix: ExactMatrix) -> bool:
+    """Whether P^-1 A P is in blocks, so that it is a P that happens to be like A."""
+    try:
+        return is_block_form(value.inverse() @ matrix @ value)
+    except ZeroDivisionError:
+        return False
