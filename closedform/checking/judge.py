@@ -42,6 +42,7 @@ from closedform.checking.judge_spectrum import (
     judge_eigenvalues,
     judge_matrix,
 )
+from closedform.checking.judge_transfer import judge_transfer
 from closedform.checking.judge_vectors import (
     judge_canonical,
     judge_eigenvector,
@@ -76,6 +77,7 @@ JUDGES: Mapping[str, Judge] = {
     "homogeneous solution": judge_homogeneous,
     "steady state": judge_steady,
     "transform": judge_transform,
+    "transfer function": judge_transfer,
     "resolvent": judge_resolvent,
     "equation": judge_equation,
     "value": judge_value,

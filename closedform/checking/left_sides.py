@@ -19,6 +19,7 @@ from closedform.notation.written.tree import (
     Negation,
     Power,
     Product,
+    Quotient,
     Sum,
     Symbol,
     Transform,
@@ -121,6 +122,10 @@ def left_of(node: Written, facts: Facts) -> Left | None:
             return _of_symbol(node, facts)
         case Product(factors):
             return _of_product(factors, facts)
+        case Quotient(above, below) if _names_input(below, facts):
+            whose = left_of(above, facts)
+            known = whose is not None and whose.says == "transform"
+            return Left("transfer function", whose.subject) if whose and known else None
         case Power() | Apply():
             return _of_function(node, facts)
     return None
@@ -245,7 +250,19 @@ def _of_spectral(name: str, facts: Facts) -> Left | None:
     whose = facts.transformed(name)
     if whose:
         return Left("transform", whose)
+    if name in ("G", "H") and len(facts.inputs) == 1:
+        return Left("transfer function")
     return Left("characteristic polynomial") if name in POLYNOMIALS else None
+
+
+def _names_input(node: Written, facts: Facts) -> bool:
+    """Whether U(s) stands there, the transform of an input u."""
+    match node:
+        case Product((Symbol(name), argument)) if _is_spectral(argument, facts):
+            return any(name.lower() == own.lower() for own in facts.inputs)
+        case Jet(name, 0, at) if at is not None and _is_spectral(at, facts):
+            return any(name.lower() == own.lower() for own in facts.inputs)
+    return False
 
 
 def _of_exponential(exponent: Written, facts: Facts) -> Left | None:
