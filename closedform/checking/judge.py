@@ -50,7 +50,7 @@ from closedform.checking.judge_vectors import (
     judge_transformation,
 )
 from closedform.checking.left_sides import base_and_indices
-from closedform.checking.naming import used_names
+from closedform.checking.naming import EARLIER, used_names
 from closedform.checking.order import is_order, judge_order
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.signs import both_signs
@@ -139,6 +139,8 @@ def judged(claim: Claim, setting: Setting) -> Judgement:
         if _hangs_on_an_angle(claim, setting):
             reason = "the line that gives the angle leaves its quadrant open"
             return Judgement(claim, Finding("not read", reason))
+    if _ends_right(claim, setting):
+        return Judgement(claim, finding)
     try:
         root = (
             carried_from(claim, setting)
@@ -150,6 +152,14 @@ def judged(claim: Claim, setting: Setting) -> Judgement:
     if root is None:
         return Judgement(claim, finding)
     return Judgement(claim, replace(finding, word="carried"), root)
+
+
+def _ends_right(claim: Claim, setting: Setting) -> bool:
+    """Whether the last members of a failing chain are right: the slip is inside the line."""
+    if all(len(group.values) < 2 for group in claim.groups):
+        return False
+    ends = tuple(replace(group, values=group.values[-1:]) for group in claim.groups)
+    return claim.says not in EARLIER and judge(replace(claim, groups=ends), setting).passes
 
 
 def _resting(claim: Claim, finding: Finding, setting: Setting) -> Judgement:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import replace
 from itertools import pairwise
 
@@ -138,6 +138,8 @@ def _jets(ground: Ground, stretch: Stretch, highest: int) -> dict[tuple[str, int
     jets: dict[tuple[str, int], Value] = dict(zip(truth.jets, free, strict=True))
     for name in ground.facts.vector_names:
         jets[name, 0], jets[name, 1] = column(field, free), column(field, rates)
+    if highest > 1:
+        _add_coordinates(jets, rates, ground)
     for (name, order), rate in zip(truth.jets, rates, strict=True):
         if (name, order + 1) in jets:
             continue
@@ -151,6 +153,28 @@ def _jets(ground: Ground, stretch: Stretch, highest: int) -> dict[tuple[str, int
         if drive_value is not None:
             jets[name, 0] = drive_value
     return jets
+
+
+def _add_coordinates(
+    jets: dict[tuple[str, int], Value], rates: Sequence[Element], ground: Ground
+) -> None:
+    """Add the column of coordinates and its derivatives, for M q'' + C q' + K q = F.
+
+    With a second derivative beside it, q is that and not the column of all states.
+    """
+    places = {jet: k for k, jet in enumerate(ground.truth.jets)}
+    names = [name for name, order in ground.truth.jets if order == 0]
+    if any((name, 1) not in places for name in names) or len(places) != 2 * len(names):
+        return
+    free = [ground.field.name(name) for name in _free(ground)]
+    columns = (
+        [free[places[name, 0]] for name in names],
+        [free[places[name, 1]] for name in names],
+        [rates[places[name, 1]] for name in names],
+    )
+    for letter in ground.facts.vector_names:
+        for order, entries in enumerate(columns):
+            jets[letter, order] = column(ground.field, entries)
 
 
 def _free(ground: Ground) -> list[str]:

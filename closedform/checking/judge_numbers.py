@@ -38,7 +38,7 @@ def judge_value(claim: Claim, setting: Setting) -> Finding:
         if isinstance(at, ExactMatrix) or not at.is_constant:
             raise NotJudgedError("the instant of a value is a number")
         for stretch in reversed(ground.stretches):
-            if (at - stretch.start).sign() in (0, 1):
+            if len(ground.stretches) == 1 or (at - stretch.start).sign() in (0, 1):
                 value = solution_value(claim.subject, ground.within(stretch), stretch)
                 return (
                     value.at(at) if isinstance(value, Element) else value.mapped(lambda e: e.at(at))

@@ -50,7 +50,7 @@ class MotionOn(Mapping[tuple[str, int], Value]):
             found = [limit for limit in limits if limit is not None]
             return found[0] if isinstance(value, Element) else column(self._ground.field, found)
         for stretch in reversed(stretches):
-            if (instant - stretch.start).sign() in (0, 1):
+            if len(stretches) == 1 or (instant - stretch.start).sign() in (0, 1):
                 value = MotionOn(self._ground.within(stretch))[name, order]
                 if isinstance(value, Element):
                     return value.at(instant)

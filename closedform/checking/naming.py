@@ -9,7 +9,7 @@ from closedform.checking.facts import Facts
 from closedform.checking.left_sides import base_and_indices
 from closedform.notation.written.tree import Apply, Jet, Symbol, walk
 
-__all__ = ["given_names", "in_order", "used_names"]
+__all__ = ["EARLIER", "given_names", "in_order", "used_names"]
 
 EARLIER = ("definition", "identity")
 """Claims that give a name to something, in general, where nothing tells the order."""

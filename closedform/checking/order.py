@@ -34,7 +34,11 @@ def parted(statements: Sequence[Statement], facts: Facts) -> tuple[Statement, ..
     parameters, or of the time with numbers, stands beside other statements, these are said
     under that condition: ``a != b: x = ...``.
     """
-    conditions = [s for s in statements if _is_condition(s, facts)]
+    conditions = [
+        s
+        for place, s in enumerate(statements)
+        if _is_condition(s, facts) and (place == 0 or s.relations != ("=",))
+    ]
     rest = [s for s in statements if s not in conditions]
     if not rest:
         conditions, rest = [], list(statements)

@@ -31,6 +31,8 @@ __all__ = ["claims_of"]
 
 ZERO = Literal(Fraction(0))
 VECTORS = ("v", "u", "w", "xi", "phi", "q", "e", "psi", "eta", "r", "x", "z", "p", "g", "h")
+MASSES = ("M", "D")
+"""Letters of P and J by which the matrices of masses and dampers go, too."""
 MATRICES = frozenset({"matrix", "P", "J"})
 OF_STATES = frozenset({"solution", "value", "initial value", "particular solution"})
 OF_STATES |= {"steady state", "homogeneous solution"}
@@ -144,7 +146,7 @@ def _left(statement: Statement, facts: Facts) -> Left | None:
     left = left_of(first, facts) if rest else None
     if left is not None and left.says in MATRICES and not any(map(_is_matrix, rest)):
         left = None
-    if left is not None and left.says in ("P", "J") and _is_of_coordinates(rest, facts):
+    if left is not None and left.subject in MASSES and _is_of_coordinates(rest, facts):
         left = None
     if left is not None and left.says == "eigenvalues" and _in_time(rest, facts):
         left = None

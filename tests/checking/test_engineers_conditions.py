@@ -101,6 +101,18 @@ DERIVATIONS = (
         r"carried n = 10/T_d = 5.28",
     ),
     written(
+        "a slip inside a chain that ends right is no consequence",
+        FREE,
+        r"bad x(t) = e^{-2t}(2\cos 3t+\sin 4t) = e^{-2t}(2\cos 3t+\sin 3t)",
+        r"bad x(0) = 1+1 = 3 = 2",
+        r"bad \dot x(0) = x(0)-1 = -1",
+    ),
+    written(
+        "parameters that are equated are no condition behind a formula",
+        MOUNT,
+        r"bad x(t) = 0.01e^{-t}\cos 20t,\quad k = 300c",
+    ),
+    written(
         "two vectors on a line",
         TWO,
         r"ok \lambda_1=-1:\quad v_1=[1\;\;{-1}]^T,\qquad \lambda_2=-2:\quad v_2=[1\;\;{-2}]^T",

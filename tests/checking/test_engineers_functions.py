@@ -110,6 +110,15 @@ DERIVATIONS = (
         r"bad q_1(t) = \cos\sqrt2\,t",
     ),
     written(
+        "masses and springs as matrices",
+        MASSES,
+        r"ok \mathbf M = \begin{pmatrix}2&0\\0&2\end{pmatrix},"
+        r"\ \mathbf K=\begin{pmatrix}6&-2\\-2&6\end{pmatrix}",
+        r"ok \mathbf M\ddot{\mathbf x}+\mathbf K\mathbf x=\mathbf 0",
+        r"bad \mathbf M\ddot{\mathbf x}-\mathbf K\mathbf x=\mathbf 0",
+        r"bad \ddot{\mathbf x}+\begin{pmatrix}3&1\\1&3\end{pmatrix}\mathbf x=\mathbf 0",
+    ),
+    written(
         "limits of functions inside formulas",
         EXCHANGE,
         r"ok K=\frac{b(\infty)}{a(\infty)}=\frac{k_f}{k_r}",
