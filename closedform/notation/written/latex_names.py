@@ -104,6 +104,16 @@ class LatexNames:
             for k, raw in enumerate(self.raws)
         )
 
+    def is_acronym(self, at: int, stop: int, end: int) -> bool:
+        """Tell whether capitals are one name that a statement is about: MTTF = ..."""
+        letters = [raw.text for raw in self.raws[at:stop]]
+        named = any(self.names.find(letter) for letter in letters)
+        before = self.raws[at - 1] if at else None
+        begins = before is None or before.kind in ("row", "&", "text") or before.text in ",;"
+        following = self.raws[stop].text if stop < end else ""
+        capitals = len(letters) > 2 and all(letter.isupper() for letter in letters)
+        return capitals and begins and not named and following in ("=", "&", "approx")
+
     def is_letter(self, at: int) -> bool:
         """Tell whether a letter stands at an index, Latin or Greek."""
         raw = self.raws[at]

@@ -165,6 +165,8 @@ class LatexParts(LatexScripted):
         ):
             bounds = (raws[at].start, raws[at + len(word) - 1].end)
             return self.function(at + len(word), end, word, bounds, out)
+        elif self.is_acronym(at, stop, end):
+            length = len(run)
         else:
             length = len(self.names.longest(run))
             if length < len(run) or not scripts.below:

@@ -56,6 +56,7 @@ _ALONE = [
     "yr",
     "a",
     "deg",
+    "degC",
     "°",
     "°C",
     "°F",
@@ -115,6 +116,7 @@ _PREFIXES = (
     ],
 )
 _SYMBOLS = frozenset(prefix + unit for prefix in _PREFIXES for unit in _BARE) | frozenset(_ALONE)
+_COHERENT = frozenset(_BARE) - {"g", "L", "l", "bar", "eV"} | {"kg", "°C", "Np"}
 _FACTOR = re.compile(r"(?P<symbol>[^\W\d_]+|°[CF]?|%|1)(?:\^?(?P<power>[-−]?[0-9]+))?")
 _COMPACT = re.compile(r"(?<=[NVAW])(?=[smh](?![A-Za-z]))")
 """Between two units without a gap: Ns, Vs, Nm, Wh."""
@@ -196,6 +198,13 @@ def is_unit(text: str) -> bool:
     forms = [_FACTOR.fullmatch(factor) for factor in factors]
     known = all(form and form["symbol"] in (*_SYMBOLS, "1") for form in forms)
     return known and any(form and form["symbol"] != "1" for form in forms)
+
+
+def is_scaled(text: str) -> bool:
+    """Tell whether a unit is a multiple or a part of a coherent one: ms, kN, min, but not kg."""
+    factors = [factor for factor in _BETWEEN.split(_COMPACT.sub(" ", text)) if factor]
+    symbols = [form["symbol"] for factor in factors if (form := _FACTOR.fullmatch(factor))]
+    return any(symbol not in (*_COHERENT, "1") for symbol in symbols)
 
 
 def unit_text(raws: list[Raw]) -> str:

@@ -58,7 +58,18 @@ def is_multiplicity(text: str) -> bool:
     beside = {"root", "roots", "eigenvalue", "pole", "algebraic", "multiplicity", "with", "mit"}
     beside |= {"of", "order", "wurzel", "eigenwert", "vielfachheit", "x", "fold", "fach", "times"}
     beside |= {"nullstelle", "avec", "multiplicité", "racine", "mult", "m", "a", "repeated", "mal"}
-    beside |= {"valeur", "propre", "geometric", "defective", "der", "ordnung", "each", "time"}
+    beside |= {
+        "valeur",
+        "propre",
+        "geometric",
+        "defective",
+        "alg",
+        "vielf",
+        "der",
+        "ordnung",
+        "each",
+        "time",
+    }
     stems = {re.sub(r"e[rnsm]?$", "", word) for word in NUMERALS}
     return all(
         w in beside | NUMERALS.keys() or re.sub(r"e[rnsm]?$", "", w) in NUMERALS.keys() | stems

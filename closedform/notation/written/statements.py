@@ -9,9 +9,10 @@ from dataclasses import dataclass, field
 from lark import Token
 
 from closedform.notation.written.grammar import StoppedError, token, tree_of
+from closedform.notation.written.latex_units import is_scaled
 from closedform.notation.written.multiplicity import asks_for_number
 from closedform.notation.written.names import Names
-from closedform.notation.written.pairs import bounds
+from closedform.notation.written.pairs import bounds, pairs
 from closedform.notation.written.tree import (
     Apply,
     Array,
@@ -197,12 +198,12 @@ def _counts(condition: list[Token], names: Names) -> bool:
 
 
 def _statement(draft: Draft, names: Names, text: str) -> Statement:
-    unit, chain = _without_units(draft.tokens)
+    unit, chain = _without_units(draft.tokens, names)
     members, relations = _tree(chain, text)
     if draft.items:
         items = [members[-1]]
         for item in draft.items:
-            more, rest = _without_units(item)
+            more, rest = _without_units(item, names)
             unit = unit or more
             items.append(_tree(rest, text)[0][0])
         members = (*members[:-1], Listing(tuple(items)))
@@ -211,7 +212,7 @@ def _statement(draft: Draft, names: Names, text: str) -> Statement:
         if _counts(condition, names):
             draft.notes.append(text[slice(*bounds(condition[0], condition[-1]))])
             continue
-        _, rest = _without_units(condition)
+        _, rest = _without_units(condition, names)
         found, signs = _tree(rest, text)
         if signs:
             conditions.append(Range(found, signs))
@@ -226,16 +227,41 @@ def _statement(draft: Draft, names: Names, text: str) -> Statement:
     return Statement(members, relations, unit, tuple(conditions), note, start, end)
 
 
-def _without_units(part: Sequence[Token]) -> tuple[str, list[Token]]:
-    """Return the unit at the end, and the tokens without units; a percentage inside counts."""
-    unit = str(part[-1].value) if part and part[-1].type == "UNIT" else ""
-    out: list[Token] = []
-    for index, one in enumerate(part):
+def _without_units(part: Sequence[Token], names: Names) -> tuple[str, list[Token]]:
+    """Return the unit at the end, or of a factor, and the tokens without units.
+
+    A percentage is a hundredth.  Beside the time a unit with a prefix is refused: which unit
+    the time has is not said.
+    """
+    unit, out, opened = "", [], []
+    for one in part:
         if one.type != "UNIT":
             out.append(one)
-        elif one.value == "%" and index < len(part) - 1:
+            if one.type.endswith("OPEN"):
+                opened.append(len(out))
+            elif one.type.endswith("CLOSE") and opened:
+                opened.pop()
+        elif one.value == "%":
             out.append(token("POSTFIX", "percent", *bounds(one)))
+        elif not opened:
+            unit = str(one.value)
+        elif is_scaled(str(one.value)) and _is_beside_time(part, one, names):
+            raise StopError(
+                UnusableNotationError,
+                *bounds(one),
+                str(one.value),
+                "a unit with a prefix stands beside the time; write the number without it",
+            )
     return unit, out
+
+
+def _is_beside_time(part: Sequence[Token], unit: Token, names: Names) -> bool:
+    """Tell whether the time stands in the bracket in which a unit does."""
+    at = next(k for k, one in enumerate(part) if one is unit)
+    partners = pairs(part, "")
+    first = max((k for k, close in partners.items() if k < at < close), default=0)
+    inside = part[first : partners.get(first, len(part))]
+    return any(one.value == Symbol(names.time) for one in inside)
 
 
 def _tree(part: Sequence[Token], text: str) -> tuple[tuple[Written, ...], tuple[str, ...]]:

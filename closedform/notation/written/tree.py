@@ -332,7 +332,9 @@ class Declared:
 
     `states` and `inputs` are functions of time, `parameters` numbers, `functions` other
     functions of time, `matrices` names of matrices.  A declared name wins over e, i, j, the
-    unit step and every other customary meaning.
+    unit step and every other customary meaning.  Any iterable of names is taken.
+
+    Raises TypeError for one string in the place of several names.
     """
 
     states: frozenset[str] = frozenset()
@@ -341,6 +343,13 @@ class Declared:
     functions: frozenset[str] = frozenset()
     matrices: frozenset[str] = frozenset()
     time: str = "t"
+
+    def __post_init__(self) -> None:
+        for slot in ("states", "parameters", "inputs", "functions", "matrices"):
+            given: object = getattr(self, slot)
+            if isinstance(given, str):
+                raise TypeError(f"{slot} are several names; put {given!r} in a list")
+            object.__setattr__(self, slot, frozenset(getattr(self, slot)))
 
     @property
     def varying(self) -> frozenset[str]:

@@ -42,6 +42,8 @@ class Brackets:
         kinds = {self.signs.all[m].kind for m in range(k + 1, close)}
         commas = len(split_at(self.signs, k + 1, close, ("COMMA",))) > 1
         rows = len(split_at(self.signs, k + 1, close, ROW_ENDS)) > 1
+        if value == "{" and commas and self._nested(k, "{") is not None:
+            return "nested"
         if value == "{":
             if kinds & {"WHEN", "OTHERWISE"} or ((rows or commas) and "REL" in kinds):
                 return "cases"

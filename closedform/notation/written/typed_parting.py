@@ -16,7 +16,11 @@ __all__ = ["Chunk", "Parting"]
 SEPARATORS = ("SEMICOLON", "NEWLINE", "COMMA", "AND")
 JOINING = frozenset({"REL", "PLUS", "MINUS", "PLUS_MINUS", "MINUS_PLUS", "TIMES", "OVER", "POWER"})
 FILLERS = frozenset({"so", "thus", "hence", "therefore", "then", "also", "with", "that", "is"})
-LABELS = frozenset({"eigenvalue", "eigenvalues", "root", "roots", "pole", "poles"})
+LABEL = re.compile(
+    r"(?:(?:the|die|les)\s+)?(?:eigenvalues?|roots?|poles?|eigenwerte?|pole|valeurs?\s+propres?)"
+    r"(?:\s+of\s+\w+)?(?:\s+(?:are|is|at|sind|ist|lauten|sont))?(?=\s+[-−+±{\d.(]|\s+\w+\s*[=,])",
+    re.IGNORECASE,
+)
 NOTE = re.compile(
     r"(?:double|twice|triple|repeated|simple|(?:with )?multiplicity|mult\.?|\d[- ]?fold"
     r"|\(?algebraic|doppelt|(?:ein|zwei|drei|vier)fach"
@@ -74,6 +78,11 @@ class Parting:
     def _goes_on(self, stop: int, begin: int) -> bool:
         between = {sign.kind for sign in self.signs.all[stop:begin]}
         last, first = self.signs.all[stop - 1].kind, self.signs.all[begin].kind
+        if between == {"COMMA"} and not self._is_declared(begin):
+            words = self.signs.text[self.signs.all[begin].start :]
+            return (
+                re.match(r"(?:twice|doppelt|zweifach|dreifach)\s*(?:$|[,;\n])", words) is not None
+            )
         if between == {"NEWLINE"}:
             return last in JOINING or first in JOINING
         condition = any(self.signs.all[m].kind == "WHEN" for m in range(self._sentence(stop), stop))
@@ -103,30 +112,32 @@ class Parting:
             if self._is_declared(begin):
                 break
             begin += 1
-        if self._is_label(begin, stop):
-            notes.append(self.signs.inside(begin, begin + 1))
-            begin += 1
+        if after := self._label_end(begin, stop):
+            notes.append(self.signs.inside(begin, after))
+            begin = after
         while stop > begin and self.signs.all[stop - 1].kind == "STOP":
             stop -= 1
+        k = self.signs.pairs.get(stop - 1, stop) if stop > begin else stop
+        beside = begin < k < stop and self.signs.all[k].spaced
+        if beside and (self._is_prose(k + 1, stop - 1) or self._counts(k, stop)):
+            notes.append(self.signs.inside(k, stop))
+            stop = k
         for k in range(begin + 1, stop):
             sign = self.signs.all[k]
             inside = self.signs.text[sign.start + (sign.kind == "OPEN") : self._last(stop)]
             named = sign.kind == "ATOM" and self._is_declared(k)
             if sign.spaced and NOTE.fullmatch(inside) and not named:
                 notes.append(self.signs.text[sign.start : self._last(stop)])
-                return begin, k, " ".join(notes)
-        k = self.signs.pairs.get(stop - 1, stop) if stop > begin else stop
-        beside = begin < k < stop and self.signs.all[k].spaced
-        if beside and (self._is_prose(k + 1, stop - 1) or self._counts(k, stop)):
-            notes.append(self.signs.inside(k, stop))
-            stop = k
+                return begin, k - (self.signs.all[k - 1].kind == "COMMA"), " ".join(notes)
         return begin, stop, " ".join(notes)
 
-    def _is_label(self, k: int, stop: int) -> bool:
-        """Whether a word says what the values behind it are: eigenvalues -1, -3."""
-        word = self.signs.inside(k, min(k + 1, stop)).lower()
-        named = self.signs.kind(k + 1, stop) == "REL" or k + 1 >= stop
-        return word in LABELS and not named and not self._is_declared(k)
+    def _label_end(self, k: int, stop: int) -> int:
+        """Return where words end that say what the values behind them are: eigenvalues -1, -3."""
+        if k >= stop or self._is_declared(k):
+            return 0
+        found = LABEL.match(self.signs.text, self.signs.all[k].start, self._last(stop))
+        end = found.end() if found else 0
+        return next((m for m in range(k, stop) if end and self.signs.all[m].start >= end), 0)
 
     def _last(self, stop: int) -> int:
         return self.signs.all[stop - 1].end

@@ -31,7 +31,7 @@ from closedform.notation.written.typed_signs import (
     spelled_out,
     why_stray,
 )
-from closedform.notation.written.typed_words import FUNCTION_WORDS, Piece, Words
+from closedform.notation.written.typed_words import FUNCTION_WORDS, KEYWORDS, PACKAGES, Piece, Words
 
 __all__ = ["Lexeme", "Scanner", "StrayError"]
 
@@ -41,12 +41,9 @@ LABEL = re.compile(r"\{(?P<inside>[A-Za-z0-9, ]+)\}")
 COMMENT = re.compile(r"#\s*(?:[^\W\d_]{2,}|\n|$)")
 SIGNS = sorted({*OPERATORS, *RELATIONS}, key=lambda sign: (-len(sign), sign))
 SIGN = re.compile("|".join(map(re.escape, SIGNS)))
-KEYWORDS = {
-    **dict.fromkeys(("for", "if", "when", "für", "falls", "wenn", "while", "where"), "WHEN"),
-    **dict.fromkeys(("otherwise", "else", "sonst", "elsewhere"), "OTHERWISE"),
-    **dict.fromkeys(("and", "und", "sowie"), "AND"),
-    **dict.fromkeys(("approx", "approximately", "about"), "ABOUT"),
-}
+COMMENT = re.compile(r"#\s*(?:[^\W\d_]{2,}|\n|$)")
+SIGNS = sorted({*OPERATORS, *RELATIONS}, key=lambda sign: (-len(sign), sign))
+SIGN = re.compile("|".join(map(re.escape, SIGNS)))
 
 
 @dataclass(frozen=True, slots=True)
@@ -234,10 +231,19 @@ class Scanner:
             digits = re.findall("[0-9₀-₉]", indices[0])
             word = "_".join([re.sub(r"(?<=[^\W\d_])(?=[0-9])", "_", word, count=1), *digits])
             end = indices.end()
+        if self.text[end : end + 1] == "∞" and word.strip("_"):
+            word, end = word.rstrip("_") + "_inf", end + 1
         if word == "in" and re.match(r"\s*\{", self.text[end:]):
             yield Lexeme("REL", "=", at, end)
             return
+        if word.lower() in PACKAGES and re.match(r"\.[A-Za-z]", self.text[end:]):
+            yield from self._word(end + 1, before)
+            return
         keyword = KEYWORDS.get(word.lower())
+        if word == "et" and not (
+            self.text[at - 1 : at].isspace() and self.text[end : end + 1].isspace()
+        ):
+            keyword = None
         if keyword and self.words.name(word) is None and not (before and before[-1].kind == "LOW"):
             yield Lexeme(keyword, word, at, end)
             return

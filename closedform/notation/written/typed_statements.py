@@ -27,6 +27,13 @@ from closedform.notation.written.typed_weaving import Weaver
 
 __all__ = ["statements_of"]
 
+KNOWN_WORDS = frozenset(
+    (
+        *("lim", "limit", "laplace", "inverse_laplace", "ilaplace", "deg", "degree", "degrees"),
+        *("rad", "eig", "spec", "eye", "piecewise", "cases", "matrix", "array", "mat"),
+    )
+)
+"""Words with a grammar of their own."""
 RAISED = re.compile("[⁻⁰¹²³⁴⁵⁶⁷⁸⁹]+")
 COMPARING = frozenset("<≤>≥→")
 TENDING = frozenset({"tends", "goes", "approaches"})
@@ -197,6 +204,8 @@ class _Statements(Parting):
             beside = [m for m in (k - 1, k + 1) if start <= m < stop]
             factors = any(self.signs.all[m].kind in ("ATOM", "NUMBER", "TEXT") for m in beside)
             words = any(self._is_plain_word(m, 2) for m in beside)
+            called = self.signs.kind(k + 1, stop) == "OPEN" and not self.signs.all[k + 1].spaced
+            factors = factors or called
             if (factors and self._is_plain_word(k, 4)) or (words and self._is_plain_word(k, 3)):
                 found = self.signs.inside(k, k + 1)
                 raise StrayError(
@@ -210,7 +219,7 @@ class _Statements(Parting):
         sign = self.signs.all[k]
         text = self.signs.inside(k, k + 1)
         known = self._is_declared(k) or not isinstance(sign.value, Symbol) or sign.word >= 0
-        limit = text in ("lim", "limit", "laplace", "inverse_laplace")
+        limit = text in KNOWN_WORDS
         return (
             not known
             and re.fullmatch(f"[a-z]{{{least},}}", text) is not None

@@ -25,7 +25,7 @@ from closedform.notation.written.tree import (
 )
 from closedform.notation.written.typed_signs import is_letter, spelled_out
 
-__all__ = ["FUNCTION_WORDS", "Piece", "Words"]
+__all__ = ["FUNCTION_WORDS", "KEYWORDS", "PACKAGES", "Piece", "Words"]
 
 FUNCTION_WORDS: Mapping[str, str] = {
     **{
@@ -81,6 +81,14 @@ FUNCTION_WORDS: Mapping[str, str] = {
     "log_10": "log10",
 }
 """Words for functions, whatever follows."""
+PACKAGES = frozenset({"np", "numpy", "sp", "sympy", "math", "cmath", "scipy", "linalg"})
+"""Prefixes of functions and matrices that are copied from programs."""
+KEYWORDS = {
+    **dict.fromkeys(("for", "if", "when", "für", "falls", "wenn", "while", "where"), "WHEN"),
+    **dict.fromkeys(("otherwise", "else", "sonst", "elsewhere"), "OTHERWISE"),
+    **dict.fromkeys(("and", "und", "sowie", "et"), "AND"),
+    **dict.fromkeys(("approx", "approximately", "about"), "ABOUT"),
+}
 SHORT = frozenset({"sh", "ch", "th", "tg", "tr", "re", "im", "lg", "angle", "real", "root", "arg"})
 """Words that are functions only in front of a bracket or an argument of their own."""
 STEPS = frozenset({"u", "H", "h", "theta", "Theta", "epsilon", "sigma", "eps"})
