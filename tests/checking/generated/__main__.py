@@ -1,4 +1,5 @@
 """Run so many derivations: `python -m tests.checking.generated [count] [first seed]`."""
+# ruff: noqa: T201
 
 from __future__ import annotations
 

@@ -18,6 +18,7 @@ from tests.checking.generated.pen import pen_of
 __all__ = ["derivation_of"]
 
 STAGES = (
+    ("equation", 0.25),
     ("matrix", 0.25),
     ("polynomial", 0.7),
     ("eigenvalues", 0.85),
@@ -37,6 +38,7 @@ STAGES = (
     ("steady", 0.4),
 )
 WRITERS = {
+    "equation": MotionSheet.equation_line,
     "matrix": MotionSheet.matrix_line,
     "polynomial": MotionSheet.polynomial_line,
     "eigenvalues": MotionSheet.eigenvalue_line,
@@ -87,7 +89,9 @@ def _derivation(seed: int) -> Derivation:
         if changed is not None:
             lines[at] = changed.written(pen)
             made = changed.slip
-    told = [replace(line, stated=line.stated or rng.random() < 0.4) for line in lines]
+    told = [
+        replace(line, stated=line.stated or (not line.of and rng.random() < 0.4)) for line in lines
+    ]
     return Derivation(seed, case.kind, case.text, tuple(told), made)
 
 

@@ -1,4 +1,5 @@
 """Random models with everything about them known: built from P and J, or from their roots."""
+# ruff: noqa: PLR0912, PLR1714
 
 from __future__ import annotations
 

@@ -1,4 +1,5 @@
 """Slips in what is written: in one place of one line, whatever it says."""
+# ruff: noqa: FBT003, C901, PLR0912
 
 from __future__ import annotations
 

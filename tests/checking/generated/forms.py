@@ -1,4 +1,5 @@
 """Formulas of the generator: as they are to be written, and what they are worth in numbers."""
+# ruff: noqa: C901, PLR0912, E741
 
 from __future__ import annotations
 
@@ -126,6 +127,8 @@ def value(f: F, env: Mapping[str, Any], *, exact: bool = False) -> Any:
     if op == "step":
         argument = value(args[0], env, exact=exact)
         return mpmath.mpf(1 if argument >= 0 else 0)
+    if op == "jet":
+        return env[args[0]]
     if op == "shift":
         return env["t"] - value(args[0], env, exact=exact)
     if op == "num_of":

@@ -28,6 +28,7 @@ class Line:
     of: str = ""
     at: str = ""
     signs: tuple[str, ...] = ("=",)
+    head: str = ""
     tail: str = ""
     gap: str = r",\quad "
     slip: str = ""
@@ -44,12 +45,12 @@ class Line:
             (text,) = self.lefts
             for k, form in enumerate(self.forms):
                 sign = self.signs[min(k, len(self.signs) - 1)] + " "
-                text += (sign if text else "") + pen.write(form)
-            return replace(self, latex=text + self.tail)
+                text += (sign if k or text else "") + pen.write(form)
+            return replace(self, latex=self.head + text + self.tail)
         parts = []
         for left, form in zip(self.lefts, self.forms, strict=True):
             parts.append(f"{left}{self.signs[0] + ' ' if left else ''}{pen.write(form)}")
-        return replace(self, latex=self.gap.join(parts) + self.tail)
+        return replace(self, latex=self.head + self.gap.join(parts) + self.tail)
 
     def has_decimals(self) -> bool:
         """Whether a rounded decimal stands in it."""

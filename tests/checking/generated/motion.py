@@ -1,4 +1,5 @@
 """The lines about motion: solutions in several forms, their derivatives, values and limits."""
+# ruff: noqa: FBT001, ARG005, PLW0108
 
 from __future__ import annotations
 
@@ -7,16 +8,16 @@ from fractions import Fraction
 import mpmath
 
 from tests.checking.generated import forms, reference
+from tests.checking.generated.canonical import CanonicalSheet
 from tests.checking.generated.forms import F, num
 from tests.checking.generated.lines import Line
-from tests.checking.generated.sheet import Sheet
 from tests.checking.generated.surds import column, product, times
 from tests.checking.generated.waves import Wave, constant
 
 __all__ = ["MotionSheet"]
 
 
-class MotionSheet(Sheet):
+class MotionSheet(CanonicalSheet):
     """A derivation with the lines about motion."""
 
     def left(self, state: str, *, at: str = "t") -> str:
@@ -98,6 +99,43 @@ class MotionSheet(Sheet):
         whole = any(n.op == "dec" and "." not in n.args[0] for _, n in forms.nodes(form))
         about = form_rounded(form) and (whole or self.rng.random() < 0.7)
         return (r"\approx",) if about else ("=",)
+
+    def equation_line(self) -> None:
+        """One of the equations, as they are typed or by way of the matrix."""
+        case, rng = self.case, self.rng
+        writer = self.writer()
+        k = rng.randrange(case.size) if not case.second_order else 1
+        base = case.states[0] if case.second_order else case.states[k]
+        highest = base + ("''" if case.second_order else "'")
+        drive = case.drive[k] if case.drive else Wave()
+        jets = [F("jet", (s, self.left(s).removesuffix("(t)"))) for s in case.states]
+        top = F("jet", (highest, self.left(highest).removesuffix("(t)")))
+        row = [(a, jet) for a, jet in zip(case.matrix[k], jets, strict=True) if not a.is_zero]
+        force = () if drive.is_zero else (writer.function(drive, "expanded"),)
+        if case.second_order:
+            terms = [writer.scaled(-a, (jet,)) for a, jet in reversed(row)]
+            sides = (forms.add(top, *terms), *(force or (num(0),)))
+        else:
+            terms = [writer.scaled(a, (jet,)) for a, jet in row]
+            sides = (top, forms.add(*terms, *force) if terms or force else num(0))
+        points = [
+            {s: mpmath.mpf(n + 3 * i + 2) / 7 for i, s in enumerate(case.states)} for n in (1, 5)
+        ]
+
+        def judge(members: tuple[F, ...], exact: bool) -> tuple[bool, bool]:
+            right, plain = True, False
+            for point, t in zip(points, reference.INSTANTS, strict=False):
+                values = [point[s] for s in case.states]
+                rate = drive.at(t) + sum(
+                    a.number() * x for a, x in zip(case.matrix[k], values, strict=True)
+                )
+                env = {**point, highest: rate, "t": t}
+                one, other = (forms.value(m, env, exact=exact) for m in members)
+                right = right and reference.close(one, other)
+                plain = plain or reference.far(one, other)
+            return right, plain
+
+        self.put("equation", Line("equation", ("",), sides, judge, signs=("", "=")))
 
     def column_line(self) -> None:
         """x(t) = ..., the solution as a column."""

@@ -1,4 +1,5 @@
 """Slips in what is worked out: in a matrix, an eigenvalue, a function, whatever its form."""
+# ruff: noqa: ARG001, ARG005
 
 from __future__ import annotations
 

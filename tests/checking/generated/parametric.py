@@ -1,4 +1,5 @@
 """Derivations from templates: which lines, in which forms, right or with one slip."""
+# ruff: noqa: FBT001, FBT003
 
 from __future__ import annotations
 
@@ -13,7 +14,8 @@ from tests.checking.generated.forms import F, put, value
 from tests.checking.generated.lines import Derivation, Line
 from tests.checking.generated.pen import pen_of
 from tests.checking.generated.reference import Judge, close, far
-from tests.checking.generated.templates import TEMPLATES, Said, Template
+from tests.checking.generated.template import Said, Template
+from tests.checking.generated.templates import TEMPLATES
 
 __all__ = ["parametric"]
 

@@ -1,4 +1,5 @@
 """Formulas as LaTeX, in the ways that people set them: one pen for each derivation."""
+# ruff: noqa: ARG002
 
 from __future__ import annotations
 
@@ -34,6 +35,7 @@ class Pen:
     matrix: int = 0
     brackets: tuple[str, str] = (r"\left(", r"\right)")
     bold: bool = False
+    diagonal: bool = False
     names: dict[str, str] = field(default_factory=dict)
     spectral: str = r"\lambda"
 
@@ -142,7 +144,7 @@ class Pen:
             return r"\,"
         if after.op == "fn" or before.op == "fn":
             return self.rng.choice(("", r"\,")) if text.endswith((")", "}", "]")) else r"\,"
-        if before.op == "name" or before.op == "sqrt":
+        if before.op in ("name", "sqrt", "jet"):
             gap = self.rng.choice((" ", r"\,", self.dot or " "))
             return gap if gap != r"\cdot" else r"\cdot "
         if self.dot and self.rng.random() < 0.5:
@@ -215,8 +217,19 @@ class Pen:
     def _step(self, f: F) -> str:
         return self.rng.choice((r"u({})", r"\theta({})", r"H({})")).format(self.write(f.args[0]))
 
+    def _jet(self, f: F) -> str:
+        return f.args[1]
+
     def _shift(self, f: F) -> str:
         return "t-" + self.write(f.args[0])
+
+    @staticmethod
+    def _is_diagonal(f: F) -> bool:
+        zero = F("num", (Fraction(0),))
+        square = all(len(row.args) == len(f.args) for row in f.args)
+        return square and all(
+            e == zero for i, row in enumerate(f.args) for k, e in enumerate(row.args) if i != k
+        )
 
     def _mat(self, f: F) -> str:
         rows = [[self.write(e) for e in row.args] for row in f.args]
@@ -225,6 +238,9 @@ class Pen:
             gap = self.rng.choice((", ", r",\,", r",\;"))
             top = self.rng.choice((r"\mathsf{T}", "T", r"\top", r"{\mathrm T}"))
             return f"({gap.join(row[0] for row in rows)})^{top}"
+        if self.diagonal and len(rows) > 1 and self._is_diagonal(f):
+            inner = r",\, ".join(row[k] for k, row in enumerate(rows))
+            return rf"\operatorname{{diag}}\left({inner}\right)"
         left, right = MATRICES[self.matrix]
         if "%s" in left:
             left %= self.rng.choice("cr") * len(rows[0])
@@ -245,6 +261,7 @@ def pen_of(rng: Random, names: dict[str, str], *, plain_i: bool = True) -> Pen:
         matrix=rng.randrange(4),
         brackets=rng.choice(((r"\left(", r"\right)"), ("(", ")"), (r"\bigl(", r"\bigr)"))),
         bold=rng.random() < 0.3,
+        diagonal=rng.random() < 0.2,
         names=names,
         spectral=rng.choice((r"\lambda", r"\lambda", "s")),
     )

@@ -1,9 +1,9 @@
 """Whether a line is true, found in numbers of 30 digits and without the program or its algebra."""
+# ruff: noqa: FBT001
 
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from itertools import permutations
 from typing import Any
 
 import mpmath
@@ -134,16 +134,25 @@ def transforms_judge(case: Case, canonical: Matrix | None) -> Judge:
             return False
         if canonical is not None:
             return satisfied(a * q, q * numeric(canonical))
-        inner = q**-1 * a * q
-        return any(satisfied(inner, form) for form in _orders(case))
+        return _in_blocks(q**-1 * a * q)
 
     return matrix_judge(accepts)
 
 
-def _orders(case: Case) -> list[mpmath.matrix]:
-    """Return the diagonal matrices of the eigenvalues in every order."""
-    rates = [chain.rate.number() for chain in case.chains for _ in chain.columns]
-    return [mpmath.diag(list(order)) for order in permutations(rates)]
+def _in_blocks(form: mpmath.matrix) -> bool:
+    """Whether a matrix is a Jordan form, ones above or below, or a real canonical form."""
+    size = form.rows
+    for i in range(size):
+        for k in range(size):
+            x = form[i, k]
+            if i == k or abs(x) < 1e-18:
+                continue
+            beside = abs(i - k) == 1 and abs(form[i, i] - form[k, k]) < 1e-18
+            turning = beside and abs(x + form[k, i]) < 1e-18
+            in_pairs = abs(i - k) == 2 and abs(x - 1) < 1e-18
+            if not (turning or in_pairs or (beside and abs(x - 1) < 1e-18)):
+                return False
+    return True
 
 
 def similar_judge(case: Case) -> Judge:

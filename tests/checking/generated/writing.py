@@ -1,4 +1,5 @@
 """Numbers, functions of time and matrices as formulas, in several equivalent forms."""
+# ruff: noqa: ARG005
 
 from __future__ import annotations
 
@@ -93,7 +94,7 @@ class Writer:
         imag = self._imaginary(x.imag)
         return imag if x.real.is_zero else add(self.real(x.real), imag)
 
-    def _imaginary(self, x: Surd, sign: int = 1) -> F:
+    def _imaginary(self, x: Surd) -> F:
         if x.sign < 0:
             return neg(self._imaginary(-x))
         if self.digits is not None:
@@ -105,7 +106,7 @@ class Writer:
         return self.scaled(x, (forms.I,))
 
     def pair(self, x: Surd) -> F:
-        """Return a number and its conjugate with plus-or-minus; also a + b sqrt(d), a - b sqrt(d)."""
+        """Return a number and its conjugate with plus-or-minus; also a ± b sqrt(d)."""
         if not x.imag.is_zero:
             imag = self._imaginary(x.imag if x.imag.sign > 0 else -x.imag)
             return F("pm", (self.real(x.real), imag))
