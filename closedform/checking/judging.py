@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import replace
 from fractions import Fraction
+from typing import TypeGuard
 
 from closedform.checking.claim import Claim
 from closedform.checking.compare import Comparison, compare
@@ -12,9 +13,12 @@ from closedform.checking.digits import DigitsMatch
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.exact import Value
 from closedform.checking.ground import Ground
+from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Finding, Setting
+from closedform.checking.transforms import laplace
 from closedform.notation.written.tree import (
     Apply,
+    Jet,
     Literal,
     Negation,
     Power,
@@ -52,6 +56,8 @@ def held_against(
         ground = setting.ground_for(opened)
         scope = setting.scope_of(ground)
         truth = true(ground)
+        if _is_spelled_out(opened) and len(ground.stretches) == 1:
+            opened, truth = _in_s(opened, truth, setting)
         try:
             about = claim.is_approximate(value)
             found = compare(opened, truth, scope, ground, approximate=about)
@@ -80,6 +86,24 @@ def held_against(
 
 GENERAL = frozenset({"P", "J", "T", "V", "S", "Q", "M", "U", "X", "D", "Lambda"})
 """Names that a general line uses for the matrices of a decomposition, stated or not."""
+
+
+def _is_spelled_out(member: Written) -> TypeGuard[Transform]:
+    """Whether something is an inverse transform of a formula, not of X(s)."""
+    return (
+        isinstance(member, Transform)
+        and member.back
+        and not any(isinstance(node, Jet) for node in walk(member.body))
+    )
+
+
+def _in_s(member: Transform, truth: Value, setting: Setting) -> tuple[Written, Value]:
+    """Return what stands behind an inverse transform, and the transform of the true function."""
+    names = {node.name for node in walk(member.body) if isinstance(node, Symbol)}
+    body = setting.renamed(member.body, names - setting.ground.facts.names - {"A"})
+    if isinstance(truth, ExactMatrix):
+        return body, truth.mapped(laplace)
+    return body, laplace(truth)
 
 
 def _is_general(member: Written, error: NotJudgedError) -> bool:

@@ -276,3 +276,11 @@ def test_zeros_at_the_end_of_a_whole_number_need_not_be_significant(
     keys = {"states": ["n"], "matrix": [["-1"]], "initial": ["3162"]}
     (found,) = held(keys, rf"n(1)\approx{shown}")
     assert found.passes == passes, found
+
+
+def test_what_is_transformed_back_is_looked_at() -> None:
+    right = r"y(t)=\mathcal{L}^{-1}\left\{\frac{1}{s+2}\right\}=e^{-2t}"
+    wrong = r"y(t)=\mathcal{L}^{-1}\left\{\frac{1}{s+3}\right\}=e^{-2t}"
+    matrix = r"e^{At}=\mathcal L^{-1}\{(sI-A)^{-1}\}"
+    found = held(TANKS, right, wrong, matrix)
+    assert [v.verdict for v in found] == ["holds", "fails", "holds"]
