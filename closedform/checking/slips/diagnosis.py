@@ -20,6 +20,7 @@ from closedform.checking.slips.edits import (
     term_signs,
 )
 from closedform.checking.slips.factors import constants, factors, left_out, normalised
+from closedform.checking.slips.frequencies import other_frequencies
 from closedform.checking.slips.lost_factors import (
     extra_names,
     inverted,
@@ -43,6 +44,7 @@ from closedform.checking.slips.root_lists import listed, root_numbers
 from closedform.checking.slips.shifts import delays, other_names
 from closedform.checking.slips.spectrum_slips import (
     canonical,
+    conjugates,
     eigenvectors,
     transformations,
 )
@@ -56,6 +58,7 @@ OF_WHOLE: tuple[Source, ...] = (
     swapped_products,
     inverses,
     canonical,
+    conjugates,
     conversions,
     rounded,
     digits,
@@ -66,6 +69,7 @@ OF_WHOLE: tuple[Source, ...] = (
 OF_PLACES: tuple[Source, ...] = (
     term_signs,
     sine_signs,
+    other_frequencies,
     chains,
     missing_times,
     angles,

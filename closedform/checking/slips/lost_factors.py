@@ -72,7 +72,9 @@ def missing_waves(trial: Trial) -> Iterator[Candidate]:
     for wave in dict.fromkeys(found):
         for spot in trial.spots():
             is_term = spot.path == trial.start or isinstance(spot.outer, Sum | Negation)
-            if is_term and not wave_above(spot) and not isinstance(spot.node, Negation):
+            if not is_term or wave_above(spot) or isinstance(spot.node, Negation):
+                continue
+            if not any(_is_wave(n) and type(n) is type(wave) for n in walk(spot.node)):
                 where = placed(trial, spot, part_text(spot.node))
                 new = trial.changed(spot, times(spot.node, wave))
                 yield Candidate(names.MISSING_WAVE, where, new)

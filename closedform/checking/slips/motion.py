@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
+from itertools import combinations
 
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.errors import NotJudgedError
@@ -83,6 +84,14 @@ def _initial_parts(trial: Trial, stretch: Stretch) -> Iterator[Wrong]:
         if len(given) > 1:
             yield name, where, _minus(true, part)
         yield names.SIGN_INITIAL, where, _minus(_minus(true, part), part)
+    for i, j in combinations(range(len(states)), 2):
+        entries = list(initial.entries)
+        entries[i], entries[j] = entries[j], entries[i]
+        other = column(ground.field, entries) - initial
+        where = f"those of {states[i]} and {states[j]}"
+        if not other.is_zero:
+            exchanged = _plus(true, _of(subject, moved @ other, ground))
+            yield names.INITIALS_EXCHANGED, where, exchanged
 
 
 def _moved(ground: Ground, stretch: Stretch) -> ExactMatrix:

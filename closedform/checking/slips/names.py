@@ -32,6 +32,7 @@ INVERSE_FOR_P = "P given for its inverse"
 TRANSPOSED = "transposed matrix"
 TRANSPOSED_P = "transposed P"
 TRANSPOSED_INVERSE = "transposed inverse"
+ORDER = "order of P and J does not match"
 COLUMNS = "columns exchanged"
 ROWS = "rows exchanged"
 ENTRIES = "entries exchanged"
@@ -39,6 +40,7 @@ MISSING_DETERMINANT = "missing 1/det in the inverse"
 DETERMINANT_TWICE = "multiplied by the determinant, not divided"
 ADJUGATE_SIGN = "signs of the adjugate"
 ADJUGATE_DIAGONAL = "diagonal of the adjugate not exchanged"
+CONJUGATE = "vector of the conjugate eigenvalue"
 OTHER_EIGENVALUE = "vector of another eigenvalue"
 LEFT_VECTOR = "vector of the transposed matrix"
 GEOMETRIC = "geometric taken for algebraic multiplicity"
@@ -46,6 +48,7 @@ MULTIPLICITY = "eigenvalue counted wrongly"
 
 INITIAL_DROPPED = "dropped initial value"
 VELOCITY_DROPPED = "initial velocity taken as zero"
+INITIALS_EXCHANGED = "initial values exchanged"
 INITIALS_DROPPED = "all initial values taken as zero"
 C2_DAMPING = "damping term missing in the second constant"
 FITTED_ALONE = "constants fitted without the particular solution"
@@ -147,6 +150,7 @@ MEANINGS: dict[str, str] = {
     TRANSPOSED: "The matrix is the transpose of the right one.",
     TRANSPOSED_P: "The eigenvectors were written as rows of P.",
     TRANSPOSED_INVERSE: "The inverse is transposed: cofactors were put in their own places.",
+    ORDER: "The eigenvalues in J are in another order than the columns of P.",
     COLUMNS: "Two columns have changed places.",
     ROWS: "Two rows have changed places.",
     ENTRIES: "Two entries have changed places.",
@@ -154,12 +158,14 @@ MEANINGS: dict[str, str] = {
     DETERMINANT_TWICE: "The adjugate was multiplied by the determinant.",
     ADJUGATE_SIGN: "The adjugate lacks its chequered signs.",
     ADJUGATE_DIAGONAL: "In the inverse of a 2 by 2 matrix the diagonal was left as it is.",
+    CONJUGATE: "The vector belongs to the conjugate eigenvalue: i has the opposite sign.",
     OTHER_EIGENVALUE: "The vector belongs to another eigenvalue.",
     LEFT_VECTOR: "The vector is one of the transposed matrix, a left eigenvector.",
     GEOMETRIC: "J was taken to be diagonal, though A has too few eigenvectors.",
     MULTIPLICITY: "An eigenvalue is listed more or less often than it occurs.",
     INITIAL_DROPPED: "The contribution of one initial value is missing.",
     VELOCITY_DROPPED: "The contribution of an initial velocity is missing.",
+    INITIALS_EXCHANGED: "The initial value of one state was put in for another one.",
     INITIALS_DROPPED: "The solution is that for zero initial values.",
     C2_DAMPING: "The second constant was taken from x'(0) without the derivative of the decay.",
     FITTED_ALONE: "The constants were fitted to the initial values before the forced part came in.",

@@ -61,8 +61,21 @@ def _single(wrong: Judged) -> str:
         return names.TRUNCATED if wrong.verdict == "truncated" else names.ROUNDING
     with ctx.workprec(BITS):
         right = to_places(acb(wrong.ball), wrong.literal.last_place)
-    pen = "" if right is None else digit_slip(wrong.literal, right)
-    return pen or names.EARLY_ROUNDING
+    if right is None or _is_last_digit(wrong.literal, right):
+        return names.EARLY_ROUNDING
+    return digit_slip(wrong.literal, right) or names.EARLY_ROUNDING
+
+
+def _is_last_digit(printed: Literal, right: Written) -> bool:
+    """Whether two numbers differ by little in their last digit, as rounding on the way makes it."""
+    inside = right.operand if isinstance(right, Negation) else right
+    if not isinstance(inside, Literal) or inside.last_place != printed.last_place:
+        return False
+    return abs(inside.value - printed.value) <= MOST_OFF * printed.last_place
+
+
+MOST_OFF = 3
+"""So many units of the last digit are put down to numbers that were rounded on the way."""
 
 
 def digits(trial: Trial) -> Iterator[Candidate]:

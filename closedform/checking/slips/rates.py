@@ -15,6 +15,7 @@ __all__ = ["rate_slip"]
 
 NEAR = Fraction(1, 400)
 EQUAL = Fraction(1, 10**9)
+SIMPLE = (2, 3, 4)
 
 
 def rate_slip(trial: Trial, kind: str, before: Fraction, right: acb) -> str:
@@ -37,6 +38,11 @@ def rate_slip(trial: Trial, kind: str, before: Fraction, right: acb) -> str:
             others = [abs(growth) for _, _, growth in modes]
         if any(_same(abs(wrong), other, near) for other in others):
             return names.OTHER_RATE
+        simple = (wrong / true, true / wrong)
+        if kind == "exponent" and not any(
+            abs(ratio - k) < near for ratio in simple for k in SIMPLE
+        ):
+            return names.ONE_NUMBER
     return names.EXPONENT_FACTOR if kind == "exponent" else names.FREQUENCY_FACTOR
 
 

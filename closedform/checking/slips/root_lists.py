@@ -11,6 +11,7 @@ from closedform.checking.claim import Claim, Group
 from closedform.checking.judge import judge
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips import names
+from closedform.checking.slips.digit_slips import digit_slip
 from closedform.checking.slips.making import negated, number, times
 from closedform.checking.slips.numbers import is_bare
 from closedform.checking.slips.solving import Place, solved
@@ -161,6 +162,6 @@ def _root_number(trial: Trial, inner: Trial, spot: Spot) -> Iterator[Candidate]:
         half = isinstance(right, Literal) and literal.value / right.value in (2, 4)
         name = names.LIST_FACTOR if twice or half else names.ONE_NUMBER
         if is_bare(trial.tree):
-            name = names.ONE_EIGENVALUE
+            name = digit_slip(literal, right) or names.ONE_EIGENVALUE
         where = f"{plain_written(literal)} ought to be {plain_written(right)}"
         yield Candidate(name, where, trial.changed(spot, right))

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Iterator
 from itertools import permutations, product
 
 from closedform.algebra.elementary import Element
-from closedform.checking.judge_vectors import authors_diagonal, authors_matrix
+from closedform.checking.judge_vectors import authors_diagonal, authors_matrix, right_products
 from closedform.checking.matrices import ExactMatrix, diagonal, identity
 from closedform.checking.slips import names
 from closedform.checking.slips.making import ONE, ZERO, negated
@@ -19,7 +20,7 @@ from closedform.notation.written.tree import (
     Written,
 )
 
-__all__ = ["canonical", "eigenvectors", "transformations"]
+__all__ = ["canonical", "conjugates", "eigenvectors", "transformations"]
 
 MOST_ORDERS = 24
 Rows = tuple[tuple[Written, ...], ...]
@@ -29,11 +30,45 @@ def canonical(trial: Trial) -> Iterator[Candidate]:
     """Yield J with ones above the diagonal, with one less, or another eigenvalue in it."""
     if trial.claim.says not in ("J", "real form"):
         return
+    yield from _asked_by_transformation(trial)
     for spot in trial.spots():
         if not isinstance(spot.node, Array) or len(spot.node.rows) != len(spot.node.rows[0]):
             continue
         yield from _with_ones(trial, spot, spot.node.rows)
         yield from _with_other_entries(trial, spot, spot.node.rows)
+
+
+def _asked_by_transformation(trial: Trial) -> Iterator[Candidate]:
+    """Yield P^-1 A P for the author's P, where J is that in another order or turned."""
+    own = trial.own()
+    if not isinstance(own, ExactMatrix) or own.shape != trial.ground.matrix.shape:
+        return
+    for asked, _ in right_products(trial.setting, trial.ground):
+        if asked.transposed == own:
+            complex_pair = any((x + y).is_zero for x, y in _across(own) if not x.is_zero)
+            name = names.SIGN_SINE_BLOCK if complex_pair else names.CHAIN_SIDE
+            yield Candidate(name, "beside the diagonal", written_back(asked))
+        elif _counted(own) == _counted(asked):
+            yield Candidate(names.ORDER, "the diagonal", written_back(asked))
+
+
+def _across(matrix: ExactMatrix) -> Iterator[tuple[Element, Element]]:
+    """Yield the entries beside the diagonal, in pairs across it."""
+    size = range(matrix.shape[0])
+    yield from ((matrix.rows[i][j], matrix.rows[j][i]) for i in size for j in size if i < j)
+
+
+def _counted(matrix: ExactMatrix) -> Counter[Element]:
+    return Counter(row[k] for k, row in enumerate(matrix.rows))
+
+
+def conjugates(trial: Trial) -> Iterator[Candidate]:
+    """Yield the conjugate of a vector."""
+    own = trial.own()
+    if trial.claim.says == "eigenvector" and isinstance(own, ExactMatrix):
+        new = own.mapped(Element.conjugate)
+        if not (new - own).is_zero:
+            yield Candidate(names.CONJUGATE, "all of it", written_back(new))
 
 
 def _with_ones(trial: Trial, spot: Spot, rows: Rows) -> Iterator[Candidate]:

@@ -97,6 +97,13 @@ EXAMPLES: tuple[tuple[str, str, tuple[Line, ...]], ...] = (
     (names.ADJUGATE_DIAGONAL, "loops", (LOOP_P, ("P inverse", "1/5*[[1, -2], [1, 3]]"))),
     (names.INVERSE_FOR_P, "loops", (LOOP_P, ("P inverse", "[[1, 2], [-1, 3]]"))),
     (names.GEOMETRIC, "filter", (("J", "J = [[-2, 0, 0], [0, -2, 0], [0, 0, -5]]"),)),
+    (names.CONJUGATE, "rotor", (("eigenvector", "v = (1, i)", "-1 + 3*i"),)),
+    (
+        names.ORDER,
+        "tanks",
+        (TANK_P, ("J", "J = [[-4, 0], [0, -1]]")),
+    ),
+    (names.INITIALS_EXCHANGED, "tanks", ("h_1(t) = 2*exp(-t) + 3*exp(-4*t)",)),
     (names.OTHER_EIGENVALUE, "tanks", (("eigenvector", "v = (1, -1)", "-1"),)),
     (names.ENTRY, "tanks", (("eigenvector", "v = (1, 3)", "-1"),)),
     (names.SIGN_ENTRY, "tanks", (("eigenvector", "v = (1, -2)", "-1"),)),
