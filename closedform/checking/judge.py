@@ -54,6 +54,7 @@ from closedform.checking.naming import EARLIER, used_names
 from closedform.checking.order import is_order, judge_order
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.signs import both_signs
+from closedform.checking.units import in_base_units, in_model_units
 from closedform.notation.written.tree import Jet, Symbol, Transform, Written, walk
 
 __all__ = ["Judgement", "judge", "judged", "stated"]
@@ -104,6 +105,10 @@ def judge(claim: Claim, setting: Setting) -> Finding:
 
     What cannot be decided is `not read`, with the reason.
     """
+    scaled = in_model_units(claim, setting.ground.truth.units)
+    if isinstance(scaled, str):
+        return Finding("fails", scaled)
+    claim = scaled
     judge_it = JUDGES.get(claim.says, judge_identity)
     if claim.says == "identity" and any(map(is_order, claim.statements)):
         judge_it = judge_order
@@ -116,7 +121,7 @@ def judge(claim: Claim, setting: Setting) -> Finding:
         try:
             return judge_it(claim, setting)
         except UnknownNameError as error:
-            found = judge_it(claim, replace(setting, general=True))
+            found = judge_it(claim, replace(setting, general=True, author=_with_later(setting)))
             return found if found.passes else Finding("not read", str(error))
     except ZeroDivisionError:
         return Finding("fails", "it divides by zero")
@@ -124,13 +129,30 @@ def judge(claim: Claim, setting: Setting) -> Finding:
         return Finding("not read", str(error))
 
 
+def _with_later(setting: Setting) -> Author:
+    """Return the author with names that later lines define, as tau, for a line that uses them."""
+    author, names = setting.author, dict[str, Written]()
+    for claim in setting.later:
+        if claim.says == "definition" or claim.says in QUANTITIES:
+            names = {**dict(_named(claim, author)), **names}
+    return replace(author, definitions={**names, **author.definitions})
+
+
 def judged(claim: Claim, setting: Setting) -> Judgement:
     """Return the finding on a claim, carried where it follows from an earlier wrong line."""
     finding = judge(claim, setting)
+    scaled = in_model_units(claim, setting.ground.truth.units)
+    claim = claim if isinstance(scaled, str) else scaled
     if finding.passes and claim.says in ("definition", "identity"):
         return _resting(claim, finding, setting)
     if finding.word != "fails":
         return Judgement(claim, finding)
+    base = in_base_units(claim, setting.ground.truth.units)
+    if base is not None:
+        other = judge(base, setting)
+        if other.passes:
+            note = "it holds in units without prefix, as of the SI; the model names none for it"
+            return Judgement(base, replace(other, notes=(*other.notes, note)))
     if setting.author.alternatives:
         other = judge(claim, replace(setting, author=setting.author.otherwise()))
         if other.passes:

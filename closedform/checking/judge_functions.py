@@ -9,9 +9,9 @@ from typing import Protocol
 
 from flint import acb, arb
 
-from closedform.algebra.elementary import Element
+from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.ansatz import Fit, fit, rank_of
-from closedform.checking.claim import Claim
+from closedform.checking.claim import Claim, Group
 from closedform.checking.compare import has_decimals
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Value, applies, exact
@@ -37,10 +37,12 @@ from closedform.checking.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (
     Array,
+    Jet,
     Literal,
     Power,
     Range,
     Symbol,
+    Transform,
     Written,
     walk,
 )
@@ -140,6 +142,9 @@ def judge_solution(claim: Claim, setting: Setting) -> Finding:
 
     With constants of integration that nothing defines it is judged as the general solution.
     """
+    found = _inverse_transforms(claim, setting)
+    if found is not None:
+        return found
     constants = constants_of(claim, setting)
     if constants:
         return _general(claim, setting, constants)
@@ -149,6 +154,26 @@ def judge_solution(claim: Claim, setting: Setting) -> Finding:
         lambda ground, stretch: solution_value(claim.subject, ground, stretch),
         lambda ground: _solution_tree(claim.subject, ground),
     )
+
+
+def _inverse_transforms(claim: Claim, setting: Setting) -> Finding | None:
+    """Return what is wrong with members that are inverse transforms; None if nothing is.
+
+    What stands in the braces has to be the transform of the function, as far as it is judged.
+    """
+    for member in claim.values:
+        match member:
+            case Transform(body, back=True) if not isinstance(body, Jet):
+                group = Group((), (body,))
+                inside = replace(claim, says="transform", groups=(group,))
+                try:
+                    finding = judge_transform(inside, setting)
+                except (NotJudgedError, NotElementaryError):
+                    continue
+                if not finding.passes:
+                    reason = "what is transformed back is not the transform"
+                    return replace(finding, reason=f"{reason}: {finding.reason}".rstrip(": "))
+    return None
 
 
 def solution_value(subject: str, ground: Ground, stretch: Stretch) -> Value:

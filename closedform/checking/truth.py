@@ -69,6 +69,7 @@ class Truth:
     `equations` are parameters that the condition gives by the others, each with its formula.
     Balls of eigenvalues and `enclosures` are those at `values`, where the case has these, else
     at the first sample; `enclosures_at` gives the latter at any values of all parameters.
+    `units` are those that the model file names, of parameters and inputs.
     """
 
     states: tuple[str, ...]
@@ -95,3 +96,4 @@ class Truth:
     inputs: Mapping[str, tuple[Piece, ...]] = field(default_factory=dict)
     equations: tuple[tuple[str, Written], ...] = ()
     enclosures_at: Callable[[Mapping[str, Written]], Mapping[str, arb]] = lambda _: {}
+    units: Mapping[str, str] = field(default_factory=dict)

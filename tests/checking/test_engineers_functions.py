@@ -134,6 +134,12 @@ DERIVATIONS = (
         r"bad (A+I)v_3=v_2\implies v_3=(2,0,0)^{\mathsf T}",
     ),
     written(
+        "inverse transforms",
+        COMPANION,
+        r"ok x_1(t) = \mathcal{L}^{-1}\left\{\frac{s+3}{(s+1)(s+2)}\right\} = 2e^{-t}-e^{-2t}",
+        r"bad x_1(t) = \mathcal{L}^{-1}\left\{\frac{s+2}{(s+1)(s+2)}\right\} = 2e^{-t}-e^{-2t}",
+    ),
+    written(
         "the transition matrix as a function",
         COMPANION,
         r"ok \Phi(0)=\mathbf I,\qquad \Phi^{-1}(t)=\begin{bmatrix}2e^{t}-e^{2t}&e^{t}-e^{2t}\\"

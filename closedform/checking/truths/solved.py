@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from closedform.checking.truth import Truth
 from closedform.checking.truths.errors import RepeatingInputError
 from closedform.checking.truths.in_cases import truths_in_cases
@@ -31,6 +33,22 @@ def truths_of(model: Model | ParametricModel | DrivenModel) -> tuple[Truth, ...]
              RepeatingInputError if an input repeats; ValuesNotCoveredError if the values of
              the model file belong to no case; what `closedform.response.solving.respond` raises.
     """
+    units = _units(model)
+    return tuple(replace(truth, units=units) for truth in _truths(model))
+
+
+def _units(model: Model | ParametricModel | DrivenModel) -> dict[str, str]:
+    """Return the units that a model file names, of parameters and inputs."""
+    found: dict[str, str] = {}
+    stacked = model.stacked if isinstance(model, DrivenModel) else model
+    if isinstance(model, DrivenModel):
+        found |= {given.name: given.unit for given in model.inputs}
+    if isinstance(stacked, ParametricModel):
+        found |= {given.name: given.unit for given in stacked.parameters}
+    return {name: unit for name, unit in found.items() if unit}
+
+
+def _truths(model: Model | ParametricModel | DrivenModel) -> tuple[Truth, ...]:
     if isinstance(model, Model):
         response = respond(model)
         require_proved(model.name, verify(response))
