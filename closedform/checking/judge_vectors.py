@@ -7,9 +7,9 @@ from collections.abc import Iterable, Iterator, Sequence
 from flint import acb
 
 from closedform.algebra.elementary import Element, NotElementaryError
-from closedform.checking.claim import Claim
+from closedform.checking.claim import Claim, Group
 from closedform.checking.compare import has_decimals
-from closedform.checking.errors import NotJudgedError
+from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.exact import Value
 from closedform.checking.ground import Ground
 from closedform.checking.judge_spectrum import roots_claimed
@@ -24,11 +24,12 @@ from closedform.checking.matrices import (
 from closedform.checking.rounded_forms import exact_form
 from closedform.checking.rounded_vectors import rounded_direction
 from closedform.checking.setting import Finding, Setting
+from closedform.checking.signs import both_signs
 from closedform.checking.similar import is_block_form, is_similar
 from closedform.checking.spread import spread
 from closedform.checking.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
-from closedform.notation.written.tree import Symbol, Written
+from closedform.notation.written.tree import Jet, Listing, Product, Symbol, Written
 
 __all__ = [
     "authors_diagonal",
@@ -226,19 +227,31 @@ def _eigenvalue_of(claim: Claim, setting: Setting, ground: Ground) -> Element | 
         if isinstance(value, Element):
             return _nearest(value, ground)
     name = claim.names[-1] if claim.names else None
-    if not isinstance(name, Symbol):
+    if not isinstance(name, Symbol | Jet):
         return None
     index = base_and_indices(name.name)[1]
     for entry in setting.author.all("eigenvalues"):
         if entry.root is not None:
             continue
         for group in entry.claim.groups:
-            for own in group.names:
-                if isinstance(own, Symbol) and base_and_indices(own.name)[1] == index and index:
-                    forms = group.values[0]
-                    found = setting.value(forms, ground)
-                    if isinstance(found, Element):
-                        return _nearest(found, ground)
+            form = _of_index(group, index)
+            found = setting.value(form, ground) if form is not None else None
+            if isinstance(found, Element):
+                return _nearest(found, ground)
+    return None
+
+
+def _of_index(group: Group, index: str) -> Written | None:
+    """Return the eigenvalue with an index: lambda_2 of lambda_1 = lambda_2 or lambda_{1,2}."""
+    for own in group.names:
+        indices = base_and_indices(own.name)[1] if isinstance(own, Symbol) else ""
+        if indices == index and index:
+            return group.values[0]
+        form = group.values[0]
+        pair = form.items if isinstance(form, Listing) else both_signs(form)
+        parts = indices.split("_")
+        if index in parts and len(parts) == len(pair) > 1:
+            return pair[parts.index(index)]
     return None
 
 
@@ -314,6 +327,14 @@ def judge_canonical(claim: Claim, setting: Setting) -> Finding:
         form = ground.jordan
         return None if form is None else written_back(form)
 
+    product = next((name for name in claim.names if isinstance(name, Product)), None)
+    if product is not None:
+        try:
+            return held_against(
+                claim, setting, lambda ground: matrix_value(product, setting, ground), right
+            )
+        except UnknownNameError:
+            pass
     last: Finding | None = None
     for member in claim.values:
         opened = setting.opened(member)
@@ -351,7 +372,12 @@ def _asked_by_transformation(
     one real and the other not, so that they do not belong together.
     """
     asked = [product for product, _ in right_products(setting, ground)]
-    later = [c.values[-1] for c in setting.later if c.says == "P" and c.values]
+    stated = [entry.claim.statements for entry in setting.author.entries]
+    later = [
+        c.values[-1]
+        for c in setting.later
+        if c.says == "P" and c.values and c.statements not in stated
+    ]
     kinds = [p for p in asked if _is_real(p) == _is_real(matrix) and is_block_form(p)]
     if claim.says == "real form":
         kinds = [p for p in kinds if not _is_diagonal(p)]

@@ -9,8 +9,11 @@ from typing import Any
 from closedform.checking.claim import SourceLine
 from closedform.model import DrivenModel, Model, ParametricModel, model_from
 
+FILES = ("derivations.json", "more_derivations.json")
 ITEMS: tuple[dict[str, Any], ...] = tuple(
-    json.loads(Path(__file__).with_name("derivations.json").read_text(encoding="utf-8"))["items"]
+    item
+    for name in FILES
+    for item in json.loads(Path(__file__).with_name(name).read_text(encoding="utf-8"))["items"]
 )
 SAYS = {"P_inv": "P inverse", "exp_A": "exp A", "exp_J": "exp J", "real_form": "real form"}
 
