@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field, replace
+from itertools import pairwise
 
 from closedform.checking.claim import Claim
 from closedform.notation.written.tree import (
@@ -12,9 +13,13 @@ from closedform.notation.written.tree import (
     Evaluated,
     Jet,
     Limit,
+    Negation,
+    Product,
+    Sum,
     Symbol,
     Written,
     changed,
+    walk,
 )
 
 __all__ = ["Author", "Entry"]
@@ -137,9 +142,25 @@ class Author:
                 return known.get(node.name)
             if isinstance(node, Jet) and node.name in known:
                 return self._function(node, known[node.name])
-            return None
+            return self._called(node, known) if isinstance(node, Product) else None
 
         return changed(tree, change)
+
+    def _called(self, product: Product, known: Mapping[str, Written]) -> Written | None:
+        """Return a product in which a function of the author's stands before -t or t - a.
+
+        That is its value there, as in Phi(-t), and not a product.
+        """
+        factors, time = list(product.factors), Symbol(self.time)
+        for k, (one, other) in enumerate(pairwise(factors)):
+            if not isinstance(one, Symbol) or not isinstance(other, Negation | Sum):
+                continue
+            value = known.get(one.name)
+            if value is not None and time in walk(value) and time in walk(other):
+                factors[k : k + 2] = [Jet(one.name, 0, other)]
+                rest = factors[0] if len(factors) == 1 else Product(tuple(factors))
+                return self.put_in(rest)
+        return None
 
     def _function(self, jet: Jet, value: Written) -> Written:
         """Return a function of the author's, its derivative, or its value at an instant."""

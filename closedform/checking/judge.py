@@ -19,6 +19,7 @@ from closedform.checking.constants import (
     rests_on_constants,
 )
 from closedform.checking.errors import NotJudgedError, UnknownNameError
+from closedform.checking.instants import at_instants
 from closedform.checking.judge_equations import judge_equation
 from closedform.checking.judge_functions import (
     judge_block_exponential,
@@ -55,7 +56,15 @@ from closedform.checking.order import is_order, judge_order
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.signs import both_signs
 from closedform.checking.units import in_base_units, in_model_units
-from closedform.notation.written.tree import Jet, Symbol, Transform, Written, walk
+from closedform.notation.written.tree import (
+    Jet,
+    Literal,
+    Negation,
+    Symbol,
+    Transform,
+    Written,
+    walk,
+)
 
 __all__ = ["Judgement", "judge", "judged", "stated"]
 
@@ -147,6 +156,10 @@ def judged(claim: Claim, setting: Setting) -> Judgement:
         return _resting(claim, finding, setting)
     if finding.word != "fails":
         return Judgement(claim, finding)
+    for name, there in at_instants(claim, setting):
+        other = judge(there, setting)
+        if other.passes:
+            return Judgement(claim, replace(other, notes=(*other.notes, f"meant at {name}")))
     base = in_base_units(claim, setting.ground.truth.units)
     if base is not None:
         other = judge(base, setting)
@@ -258,8 +271,8 @@ def _opened(claim: Claim, author: Author) -> tuple[Group, ...]:
 def _named(claim: Claim, author: Author) -> list[tuple[str, Written]]:
     """Return what the names on the left of a claim stand for from now on.
 
-    The first member without decimals is taken, else the last; lambda_{1,2} with plus-or-minus
-    names two numbers.
+    The first member without decimals is taken, else the first formula, else the last;
+    lambda_{1,2} with plus-or-minus names two numbers.
     """
     found: list[tuple[str, Written]] = []
     for group in claim.groups:
@@ -267,7 +280,8 @@ def _named(claim: Claim, author: Author) -> list[tuple[str, Written]]:
             continue
         closed = [v for v in group.values if not any(isinstance(n, Transform) for n in walk(v))]
         closed = closed or [group.values[-1]]
-        value = next((v for v in closed if not has_decimals(v)), closed[-1])
+        formulas = [v for v in closed if not isinstance(v, Literal | Negation)]
+        value = next((v for v in closed if not has_decimals(v)), (formulas or closed[-1:])[0])
         opened = author.put_in(value)
         several = both_signs(opened)
         for name in group.names:

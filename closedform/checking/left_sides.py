@@ -242,6 +242,8 @@ def _of_product(factors: tuple[Written, ...], facts: Facts) -> Left | None:
                 return Left("J", last)
         case (Symbol(name), argument) if _is_spectral(argument, facts):
             return _of_spectral(name, facts)
+        case (Identity(None), Symbol("s")) if facts.transformed("I"):
+            return _of_spectral("I", facts)
     return None
 
 

@@ -64,6 +64,12 @@ matrix = [[0, 1], [-2, -3]]
 initial = [1, 0]
 """
 
+TANKS = """
+title = "Two tanks"
+equations = ["V1' = -0.25*V1", "V2' = 0.25*V1 - 0.4*V2"]
+initial = { V1 = 120, V2 = 40 }
+"""
+
 DERIVATIONS = (
     written(
         "a new function holds on every interval",
@@ -132,6 +138,38 @@ DERIVATIONS = (
         r"ok (A+I)v_1=0\implies v_1=(0,0,1)^{\mathsf T};\qquad (A+I)v_2=v_1\implies"
         r" v_2=(0,1,0)^{\mathsf T}",
         r"bad (A+I)v_3=v_2\implies v_3=(2,0,0)^{\mathsf T}",
+    ),
+    written(
+        "equations that are solved for an instant",
+        TANKS,
+        r"ok 120e^{-t/4}=60 \implies t_{1/2}=4\ln 2=2.77",
+        r"bad 120e^{-t/4}=60 \implies t_{1/2}=4\ln 3",
+        r"ok V_1(t_1) = 30 \implies t_1 = 4\ln 4",
+        r"ok \dot V_2 = 0: \quad -50e^{-0{,}25t^*}+64e^{-0{,}4t^*}=0 \quad\Rightarrow\quad"
+        r" t^*=\frac{\ln 1{,}28}{0{,}15}=1{,}646",
+        r"bad \dot V_2 = 0 \Rightarrow t_m = \frac{\ln 1{,}6}{0{,}15}",
+    ),
+    written(
+        "a transition matrix of another time",
+        COMPANION,
+        r"ok \Phi(t)=\begin{bmatrix}2e^{-t}-e^{-2t}&e^{-t}-e^{-2t}\\"
+        r"-2e^{-t}+2e^{-2t}&-e^{-t}+2e^{-2t}\end{bmatrix}",
+        r"ok \Phi^{-1}(t)=\Phi(-t)",
+    ),
+    written(
+        "P and J on one line",
+        CASCADE,
+        r"ok P=\begin{pmatrix}0&0&1\\0&1&0\\1&0&0\end{pmatrix},\quad"
+        r" J=\begin{pmatrix}-1&1&0\\0&-1&1\\0&0&-1\end{pmatrix}",
+        r"bad P=\begin{pmatrix}1&0&0\\0&1&0\\0&0&1\end{pmatrix},\quad"
+        r" J=\begin{pmatrix}-1&1&0\\0&-1&1\\0&0&-1\end{pmatrix}",
+    ),
+    written(
+        "what P^-1 A P is",
+        COMPANION,
+        r"ok T=\begin{pmatrix}1&1\\-1&-2\end{pmatrix},\quad"
+        r" T^{-1}AT=\begin{pmatrix}-1&0\\0&-2\end{pmatrix}",
+        r"bad T^{-1}AT=\begin{pmatrix}-2&0\\0&-1\end{pmatrix}",
     ),
     written(
         "inverse transforms",
