@@ -78,6 +78,7 @@ def _derivation(seed: int) -> Derivation:
     stages = [stage for stage in planned if stage in SLIPS]
     if way == "object" and stages:
         sheet.slip = rng.choice(stages)
+    sheet.chained = way == "right"
     sheet.begin(planned)
     for stage in planned:
         WRITERS[stage](sheet)

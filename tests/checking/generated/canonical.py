@@ -116,7 +116,7 @@ class CanonicalSheet(SpectrumSheet):
         left = self.rng.choice(
             (f"{self.euler()}^{{{a}t}}", f"{self.euler()}^{{{a} t}}", rf"\exp({a}t)", r"\Phi(t)")
         )
-        told = {"P", "J"} <= set(self.planned) and not self.slip
+        told = {"P", "J"} <= set(self.planned) and self.chained
         if told and self.rng.random() < 0.3:
             j = self.j_letter + (" " if self.j_letter[0] == "\\" else "")
             left += f"={self.letter}{self.euler()}^{{{j}t}}{self.letter}^{{-1}}"

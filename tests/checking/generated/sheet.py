@@ -48,6 +48,7 @@ class Sheet:
         self.slip, self.carry, self.made = slip, carry, ""
         self.lines: list[Line] = []
         self.indexed = False
+        self.chained = False
         self.paired: list[int] = []
         self.bold = pen.bold
         self.transition_at = reference.transition_at(case)
