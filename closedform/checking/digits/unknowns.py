@@ -44,7 +44,9 @@ class Unknown:
 def numbered(tree: Written, *, integers: bool) -> tuple[Written, tuple[Unknown, ...]]:
     """Return a formula with names for its printed numbers, and the numbers in their order.
 
-    These are the decimals and, with `integers`, the integers that are no exponents of powers.
+    These are the decimals and, with `integers`, the integers that may be rounded: not the
+    exponents of powers, what stands under a root, a fraction of short numbers as 7/5, and the
+    denominators outside exponents and angles.
     Numbers inside matrices, integrals and the like keep their printed values.
     """
     found: list[Unknown] = []
@@ -109,6 +111,8 @@ def _numbered(
     if not _is_open(node):
         return node
 
+    integers = integers and not _is_exact(node)
+
     def inner(part: Written, role: tuple[str, ...] = role) -> Written:
         return _numbered(part, found, role, integers=integers)
 
@@ -123,7 +127,11 @@ def _numbered(
             parts = {"operand": inner(operand)}
         case Quotient(above, below):
             within = _beside(role, node)
-            parts = {"numerator": inner(above, within), "denominator": inner(below, within)}
+            rounded = integers and bool(role)
+            parts = {
+                "numerator": inner(above, within),
+                "denominator": _numbered(below, found, within, integers=rounded),
+            }
         case Power(base, exponent) if base == EULER:
             parts = {"exponent": inner(exponent, ("exp",))}
         case Power(base, exponent):
@@ -138,6 +146,20 @@ def _numbered(
         case _:
             return node
     return replace(node, **parts)
+
+
+def _is_exact(node: Written) -> bool:
+    """Whether the integers in a node are meant as they stand: a root, a fraction as 7/5."""
+    if isinstance(node, Apply) and node.function == "sqrt":
+        return True
+    if not isinstance(node, Quotient) or any(isinstance(n, Symbol) for n in walk(node)):
+        return False
+    printed = [n for n in walk(node.numerator) if isinstance(n, Literal)]
+    return all(significant_digits(literal) < LONG for literal in printed)
+
+
+LONG = 3
+"""Integers with so many digits may be rounded even above a fraction line."""
 
 
 def _beside(role: tuple[str, ...], node: Written) -> tuple[str, ...]:
