@@ -122,6 +122,11 @@ class LatexCommands(LatexAnnotated):
             return stop
         found, behind = self.nucleus(at, end, font)
         if found is not None:
+            unknown = raw.text.startswith("operatorname") and len(found.spelling) > 1
+            if unknown and self.names.find(found.spelling) is None and behind < end:
+                applied = self.raws[behind].kind in ("letter", "digit") or self.is_letter(behind)
+                if applied and found.spelling not in FUNCTION_WORDS:
+                    self.stop(raw, "this function is not known; write it in those that are")
             return self.named(found, behind, end, out)
         low_high = self.font_argument(at, end)
         if low_high is None:

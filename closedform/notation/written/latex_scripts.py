@@ -140,9 +140,19 @@ def mark_of(raws: list[Raw], *, transposed: bool) -> str:
             return f"primes {len(texts)}"
         case ["(", *inside, ")"] if inside and all(text.isalnum() for text in inside):
             return f"({''.join(inside)})"
-        case [*letters] if upright and letters and all(text.isalpha() for text in letters):
+        case [*letters] if _is_upright_word(raws) and all(text.isalpha() for text in letters):
             word = "".join(letters)
             return "" if word in ("e", "i", "j") else f"word {word}"
         case ["'", *rest] if all(text == "'" for text in rest):
             return f"primes {len(texts)}"
     return ""
+
+
+def _is_upright_word(raws: list[Raw]) -> bool:
+    """Tell whether a superscript is one text, or letters in one upright font."""
+    if len(raws) < 2:
+        return bool(raws) and raws[0].kind == "text"
+    first = raws[1] if raws[0].kind == "{" else raws[0]
+    set_upright = first.kind == "command" and first.text in FONTS | SWITCHES.keys()
+    letters = [raw for raw in raws if raw is not first and raw.kind not in "{}"]
+    return set_upright and bool(letters) and all(raw.kind == "letter" for raw in letters)

@@ -48,7 +48,7 @@ DROPPED = _words(
     "displaystyle textstyle scriptstyle scriptscriptstyle limits nolimits nonumber notag "
     "hline toprule midrule bottomrule strut mathstrut allowbreak nobreak relax "
     "noindent centering protect allowdisplaybreaks null mathop mathrel mathbin mathord mathopen "
-    "mathclose mathpunct mathinner ensuremath smash boxed mathlarger"
+    "checkmark mathclose mathpunct mathinner ensuremath smash boxed mathlarger"
 )
 """Commands that change only how a formula looks; of those with an argument it stays."""
 
@@ -110,6 +110,8 @@ FUNCTION_WORDS = {
     "arsinh": "asinh",
     "arcosh": "acosh",
     "artanh": "atanh",
+    **{f"Ar{name}": f"a{name}" for name in ("sinh", "cosh", "tanh")},
+    **{f"Arc{name}": f"a{name}" for name in ("sin", "cos", "tan")},
     "arcsinh": "asinh",
     "arccosh": "acosh",
     "arctanh": "atanh",

@@ -73,7 +73,7 @@ class Maker:
             case Product(factors):
                 return self._combined(mul, factors, unit)
             case Quotient(above, below):
-                return self.of(above, unit) / self.of(below)
+                return _over(self.of(above, unit), self.of(below))
             case Power(base, exponent):
                 return self._power(base, exponent, unit)
             case Apply(function, arguments):
@@ -187,6 +187,11 @@ class Maker:
 def _exponential(exponent: Any) -> Any:
     whole = isinstance(exponent, sympy.MatrixBase | sympy.MatrixExpr)
     return sympy.exp(exponent, evaluate=False) if whole else sympy.exp(exponent)
+
+
+def _over(above: Any, below: Any) -> Any:
+    whole = isinstance(below, sympy.MatrixBase | sympy.MatrixExpr)
+    return above * below**-1 if whole else above / below
 
 
 def _derived(made: Any, by: tuple[Any, int]) -> Any:

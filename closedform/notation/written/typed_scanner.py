@@ -20,7 +20,10 @@ from closedform.notation.written.typed_numbers import (
     literal,
 )
 from closedform.notation.written.typed_signs import (
+    COMMENT,
     FRACTIONS,
+    INDICES,
+    LABEL,
     OPERATORS,
     PRIMES,
     RELATIONS,
@@ -36,12 +39,6 @@ from closedform.notation.written.typed_words import FUNCTION_WORDS, KEYWORDS, PA
 __all__ = ["Lexeme", "Scanner", "StrayError"]
 
 POWER_OF_D = r"(?:(?:\^|\*\*)?\s*\(?\s*([1-9])\s*\)?|([²³⁴]))?"
-INDICES = re.compile(r"(?:,\s?[0-9₀-₉])+(?=\s*(?:[=≈~∈]|:=))")
-LABEL = re.compile(r"\{(?P<inside>[A-Za-z0-9, ]+)\}")
-COMMENT = re.compile(r"#\s*(?:[^\W\d_]{2,}|\n|$)")
-SIGNS = sorted({*OPERATORS, *RELATIONS}, key=lambda sign: (-len(sign), sign))
-SIGN = re.compile("|".join(map(re.escape, SIGNS)))
-COMMENT = re.compile(r"#\s*(?:[^\W\d_]{2,}|\n|$)")
 SIGNS = sorted({*OPERATORS, *RELATIONS}, key=lambda sign: (-len(sign), sign))
 SIGN = re.compile("|".join(map(re.escape, SIGNS)))
 
@@ -290,10 +287,8 @@ class Scanner:
 
 
 def _kind(piece: Piece, *, raised: bool) -> str:
-    if piece.function:
-        return "FUNCTION"
-    if isinstance(piece.node, Literal):
-        return "NUMBER"
+    if piece.function or isinstance(piece.node, Literal):
+        return "FUNCTION" if piece.function else "NUMBER"
     return "EULER" if piece.node == EULER and raised else "ATOM"
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import unicodedata
 from fractions import Fraction
 
@@ -9,7 +10,10 @@ from closedform.notation.greek import LETTERS
 
 __all__ = [
     "ACCENTS",
+    "COMMENT",
     "FRACTIONS",
+    "INDICES",
+    "LABEL",
     "OPERATORS",
     "PRIMES",
     "RELATIONS",
@@ -54,6 +58,9 @@ FRACTIONS = {
 }
 DOTS = {"\u0307": 1, "\u0308": 2, "\u20db": 3}
 ACCENTS = {"\u0302": "hat", "\u0304": "bar", "\u0305": "bar", "\u0303": "tilde"}
+INDICES = re.compile(r"(?:,\s?[0-9₀-₉])+(?=\s*(?:[=≈~∈]|:=))")
+LABEL = re.compile(r"\{(?P<inside>[A-Za-z0-9, ]+)\}")
+COMMENT = re.compile(r"#\s*(?:[^\W\d_]{2,}|\n|$)")
 
 
 def is_letter(sign: str) -> bool:
