@@ -47,10 +47,19 @@ def numbered(tree: Written, *, integers: bool) -> tuple[Written, tuple[Unknown, 
     These are the decimals and, with `integers`, the integers that may be rounded: not the
     exponents of powers, what stands under a root, a fraction of short numbers as 7/5, and the
     denominators outside exponents and angles.
+    Beside decimals only long integers may be rounded: 5 is no rounding of 4.991 beside 0.0601.
     Numbers inside matrices, integrals and the like keep their printed values.
     """
     found: list[Unknown] = []
-    return _numbered(tree, found, (), integers=integers), tuple(found)
+    decimals = [n for n in walk(tree) if isinstance(n, Literal) and n.is_decimal]
+    kept = frozenset(
+        node for node in walk(tree) if decimals and isinstance(node, Literal) and _is_short(node)
+    )
+    return _numbered(tree, found, (), integers=integers, kept=kept), tuple(found)
+
+
+def _is_short(literal: Literal) -> bool:
+    return not literal.is_decimal and significant_digits(literal) < LONG
 
 
 def tied(unknowns: Sequence[Unknown], within: Fraction | None) -> tuple[tuple[int, ...], ...]:
@@ -101,10 +110,15 @@ def significant_digits(literal: Literal) -> int:
 
 
 def _numbered(
-    node: Written, found: list[Unknown], role: tuple[str, ...], *, integers: bool
+    node: Written,
+    found: list[Unknown],
+    role: tuple[str, ...],
+    *,
+    integers: bool,
+    kept: frozenset[Literal],
 ) -> Written:
     if isinstance(node, Literal):
-        if not (node.is_decimal or integers):
+        if not (node.is_decimal or integers) or node in kept:
             return node
         found.append(Unknown(node, role))
         return Symbol(f"{_MARK}{len(found) - 1}")
@@ -114,7 +128,7 @@ def _numbered(
     integers = integers and not _is_exact(node)
 
     def inner(part: Written, role: tuple[str, ...] = role) -> Written:
-        return _numbered(part, found, role, integers=integers)
+        return _numbered(part, found, role, integers=integers, kept=kept)
 
     parts: dict[str, Any]
     match node:
@@ -130,7 +144,7 @@ def _numbered(
             rounded = integers and bool(role)
             parts = {
                 "numerator": inner(above, within),
-                "denominator": _numbered(below, found, within, integers=rounded),
+                "denominator": _numbered(below, found, within, integers=rounded, kept=kept),
             }
         case Power(base, exponent) if base == EULER:
             parts = {"exponent": inner(exponent, ("exp",))}
@@ -138,7 +152,7 @@ def _numbered(
             of_ten = isinstance(base, Literal) and base.value == 10
             parts = {
                 "base": base if of_ten else inner(base),
-                "exponent": _numbered(exponent, found, role, integers=False),
+                "exponent": _numbered(exponent, found, role, integers=False, kept=kept),
             }
         case Apply(function, arguments):
             within = (_KINDS[function],) if function in _KINDS else role
