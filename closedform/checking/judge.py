@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
+from fractions import Fraction
 
 from closedform.algebra.elementary import NotElementaryError
 from closedform.checking.angles import angles_of
@@ -18,6 +19,7 @@ from closedform.checking.constants import (
     opens,
     rests_on_constants,
 )
+from closedform.checking.cuts import with_cuts
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.instants import at_instants
 from closedform.checking.judge_equations import judge_equation
@@ -118,7 +120,7 @@ def judge(claim: Claim, setting: Setting) -> Finding:
     if isinstance(scaled, str):
         return Finding("fails", scaled)
     claim = scaled
-    judge_it = JUDGES.get(claim.says, judge_identity)
+    judge_it, setting = JUDGES.get(claim.says, judge_identity), with_cuts(claim, setting)
     if claim.says == "identity" and any(map(is_order, claim.statements)):
         judge_it = judge_order
     names = used_names(claim) - setting.author.definitions.keys()
@@ -130,12 +132,29 @@ def judge(claim: Claim, setting: Setting) -> Finding:
         try:
             return judge_it(claim, setting)
         except UnknownNameError as error:
+            if claim.says == "identity" and error.name in FREE:
+                return judge_it(_in_free_name(claim, error.name, setting), setting)
             found = judge_it(claim, replace(setting, general=True, author=_with_later(setting)))
             return found if found.passes else Finding("not read", str(error))
     except ZeroDivisionError:
         return Finding("fails", "it divides by zero")
     except OUTSIDE as error:
         return Finding("not read", str(error))
+
+
+FREE = ("s", "omega")
+"""Names that nobody defines, as in det(K - omega^2 M) or adj(s I - A): any value is meant."""
+
+
+def _in_free_name(claim: Claim, name: str, setting: Setting) -> Claim:
+    """Return an identity in the spectral variable for a free name, without "= 0" at its end."""
+    groups = []
+    for group in claim.groups:
+        values = tuple(setting.renamed(setting.opened(v), (name,)) for v in group.values)
+        if len(values) > 2 and values[-1] == Literal(Fraction(0)):
+            values = values[:-1]
+        groups.append(replace(group, values=values))
+    return replace(claim, groups=tuple(groups))
 
 
 def _with_later(setting: Setting) -> Author:

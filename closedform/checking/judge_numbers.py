@@ -10,7 +10,7 @@ from flint import acb
 
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.claim import Claim
-from closedform.checking.compare import compare
+from closedform.checking.compare import compare, has_decimals
 from closedform.checking.constants import constant_values, is_constant_of_integration
 from closedform.checking.definitions import quantities_meant, require_definition
 from closedform.checking.errors import NotJudgedError, UnknownNameError
@@ -22,7 +22,7 @@ from closedform.checking.left_sides import base_and_indices
 from closedform.checking.matrices import ExactMatrix
 from closedform.checking.setting import Finding, Setting
 from closedform.checking.written_back import written_back
-from closedform.notation.written.tree import Jet, Symbol, Written, walk
+from closedform.notation.written.tree import Jet, Literal, Negation, Symbol, Written, walk
 
 __all__ = ["QUANTITIES", "judge_definition", "judge_identity", "judge_quantity", "judge_value"]
 
@@ -195,6 +195,7 @@ def _identity(claim: Claim, setting: Setting) -> Finding:
         if (claim.stated and claim.says != "definition") or not claim.names:
             raise NotJudgedError("it does not tell what it is a value of")
         return Finding("holds", "a definition; nothing is claimed")
+    members = _exact_first(members, setting)
     first = setting.opened(members[0])
     worst: Finding | None = None
     for member in members[1:]:
@@ -215,6 +216,18 @@ def _identity(claim: Claim, setting: Setting) -> Finding:
         if found.how == "digits":
             worst = Finding("holds to the digits shown", found.reason)
     return worst or Finding("holds")
+
+
+def _exact_first(members: tuple[Written, ...], setting: Setting) -> tuple[Written, ...]:
+    """Return members with one that is exact in front, where the first is a rounded number."""
+    opened = setting.opened(members[0])
+    number = opened.operand if isinstance(opened, Negation) else opened
+    if not isinstance(number, Literal) or not number.is_decimal:
+        return members
+    for k, member in enumerate(members):
+        if not has_decimals(setting.opened(member)):
+            return (member, *members[:k], *members[k + 1 :])
+    return members
 
 
 def _first_value(tree: Written, setting: Setting, ground: Ground) -> Value:

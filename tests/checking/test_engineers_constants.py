@@ -130,6 +130,8 @@ DERIVATIONS = (
         "a rounded particular solution",
         COIL,
         r"ok i_p(t) = 1{,}768\cos(200t-45^\circ)\,\mathrm A",
+        r"ok \varphi = 0{,}785,\quad i_p(t) = 1{,}768\cos(200t-\varphi)",
+        r"ok \varphi = \operatorname{atan2}(1, 1)",
         r"bad i_p(t) = 1{,}768\cos(200t+45^\circ)\,\mathrm A",
         r"bad i_p(t) = 1{,}25\cos(200t-\frac{\pi}{4})\,\mathrm A",
         r"bad i_p(t) = 1{,}768\sin(200t-45^\circ)\,\mathrm A",

@@ -122,6 +122,8 @@ DERIVATIONS = (
         r"\ \mathbf K=\begin{pmatrix}6&-2\\-2&6\end{pmatrix}",
         r"ok \mathbf M\ddot{\mathbf x}+\mathbf K\mathbf x=\mathbf 0",
         r"bad \mathbf M\ddot{\mathbf x}-\mathbf K\mathbf x=\mathbf 0",
+        r"ok \det(\mathbf K-\omega^2\mathbf M)=4\omega^4-24\omega^2+32=0",
+        r"bad \det(\mathbf K-\omega^2\mathbf M)=4\omega^4-24\omega^2+36=0",
         r"bad \ddot{\mathbf x}+\begin{pmatrix}3&1\\1&3\end{pmatrix}\mathbf x=\mathbf 0",
     ),
     written(
