@@ -8,8 +8,9 @@ from closedform.algebra.elementary import Element, ElementaryField
 from closedform.checking.exact import Scope, exact
 from closedform.checking.ground import Ground, ground_of
 from closedform.checking.truth import Truth
-from closedform.errors import InputError
+from closedform.errors import InputError, Place
 from closedform.notation.comparison import read_comparison
+from closedform.notation.errors import quoted
 from closedform.notation.expression import Expression
 from closedform.notation.written.from_expression import written_from
 
@@ -24,12 +25,17 @@ class NoSuchCaseError(InputError):
         self.path, self.case, self.conditions = path, case, conditions
 
     def __str__(self) -> str:
+        if self.conditions == ("",):
+            return (
+                f"{self.path}: here stands the case {quoted(self.case)}, and the model has no "
+                "cases; take it away, or name another model."
+            )
         listed = "; ".join(
             f"{k}: {text or 'all values'}" for k, text in enumerate(self.conditions, 1)
         )
         return (
-            f"{self.path}: the model has no case {self.case!r}; name one by its number, or by a "
-            f"condition that holds in it. It has: {listed}"
+            f"{self.path}: the model has no case {quoted(self.case)}; name one by its number, or "
+            f"by a condition that holds in it. It has: {listed}"
         )
 
 
@@ -52,27 +58,31 @@ class Grounds:
 
     def allowed(self, where: str, truth: Truth) -> tuple[Truth, ...]:
         """Return the cases that a line allows: the one at hand first if it is among them."""
-        found = allowed_cases(self._truths, where, self._path)
+        found = allowed_cases(self._truths, where, self._path, key="where")
         return (truth,) if any(other is truth for other in found) else found
 
 
-def allowed_cases(truths: tuple[Truth, ...], case: str, path: Path) -> tuple[Truth, ...]:
+def allowed_cases(
+    truths: tuple[Truth, ...], case: str, path: Path, *, key: str = "case"
+) -> tuple[Truth, ...]:
     """Return the cases that a derivation may be about: all if `case` is empty.
 
     `case` is a number from 1, or a condition such as c^2 < 4*m*k: the cases stay in which it
-    holds at every sample of the parameters.
+    holds at every sample of the parameters.  Errors name the file and `key`.
 
     Raises:  NoSuchCaseError if none does; what `read_comparison` raises.
     """
     text = case.strip()
     if not text:
         return truths
-    if text.isdigit():
-        if not 1 <= int(text) <= len(truths):
+    if text.isascii() and text.isdigit():
+        number = text.lstrip("0")
+        if number not in map(str, range(1, len(truths) + 1)):
             raise NoSuchCaseError(path, text, tuple(truth.condition for truth in truths))
-        return (truths[int(text) - 1],)
+        return (truths[int(number) - 1],)
     names = frozenset(truths[0].parameters)
-    left, relation, right = read_comparison(text, names=names)
+    place = Place(str(path), key)
+    left, relation, right = read_comparison(text, names=names, place=place)
     found = tuple(
         truth
         for truth in truths

@@ -40,7 +40,8 @@ def check_lines(source: Source, model: Model | ParametricModel | DrivenModel) ->
     """
     truths = truths_of(model)
     grounds = Grounds(truths, source.path)
-    allowed = allowed_cases(truths, source.case or source.where, source.path)
+    key = "case" if source.case else "where"
+    allowed = allowed_cases(truths, source.case or source.where, source.path, key=key)
     valued = tuple(truth for truth in allowed if truth.values is not None)
     best = _best(source, valued or allowed, grounds)
     return CheckReport(

@@ -14,6 +14,7 @@ from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Value, exact
 from closedform.checking.ground import Ground
 from closedform.checking.judge_functions import (
+    CONSTANTS,
     constants_of,
     free_residual,
     laplace,
@@ -39,7 +40,8 @@ OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
 
 def is_constant_of_integration(name: str, setting: Setting) -> bool:
     """Whether an earlier line of the author's has an open constant of this name."""
-    return any(name in names for _, names in _general(setting))
+    shaped = name.rstrip("0123456789_") in CONSTANTS  # saves looking through all lines
+    return shaped and any(name in names for _, names in _general(setting))
 
 
 def opens(claim: Claim, setting: Setting) -> bool:

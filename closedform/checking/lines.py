@@ -6,6 +6,7 @@ from dataclasses import dataclass, replace
 
 from closedform.checking.claim import SourceLine
 from closedform.checking.facts import Facts
+from closedform.notation.errors import quoted
 from closedform.notation.written.reader import read_latex
 from closedform.notation.written.tree import (
     IMAGINARY,
@@ -53,8 +54,12 @@ def read_line(line: SourceLine, facts: Facts) -> ReadLine:
         statements=tuple(_with_current(one, facts) for one in reading.statements),
         others=tuple(tuple(_with_current(one, facts) for one in other) for other in reading.others),
     )
-    of = _number(_stated(line.of, facts)) if line.says in VECTORS else None
-    at = _stated(line.at, facts) if line.at else None
+    whose = line.of if line.says in VECTORS else ""
+    of, at = _number(_stated(whose, facts)), _stated(line.at, facts)
+    for key, text, found in (("of", whose, of), ("at", line.at, at)):
+        if text.strip() and found is None:
+            trouble = f"what is said under '{key}' is no formula that can be read: {quoted(text)}"
+            return ReadLine(line, None, trouble)
     return ReadLine(line, reading, "", of, at)
 
 

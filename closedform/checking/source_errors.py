@@ -12,6 +12,7 @@ __all__ = [
     "NoFormulaError",
     "NoModelError",
     "NoSuchModelError",
+    "OwnModelError",
     "RemarkError",
     "SourceEncodingError",
     "SourceError",
@@ -41,14 +42,15 @@ class SourceFileError(SourceError):
 
 
 class SourceEncodingError(SourceError):
-    """A file that is not UTF-8; the place is that of the byte."""
+    """A file that is not UTF-8, or holds NUL characters; the place is that of the byte."""
 
     def __init__(self, place: Place, byte: int) -> None:
         super().__init__(place, byte)
         self.byte = byte
 
     def _paragraph(self) -> str:
-        return f"the byte 0x{self.byte:02x} is not UTF-8 text; save the file in UTF-8"
+        found = "belongs in no text" if self.byte == 0 else "is not UTF-8 text"
+        return f"the byte 0x{self.byte:02x} {found}; save the file in UTF-8"
 
 
 class SourceSyntaxError(SourceError):
@@ -95,9 +97,20 @@ class NoSuchModelError(SourceError):
         self.name, self.path = name, path
 
     def _paragraph(self) -> str:
+        place = "" if self.path == self.name else f", which would be {quoted(self.path, 200)}"
         return (
-            f"there is no model file {quoted(self.name)}, which would be {self.path}; its name "
-            "counts from the folder of this file"
+            f"there is no model file {quoted(self.name)}{place}; its name counts from the folder "
+            "of this file"
+        )
+
+
+class OwnModelError(SourceError):
+    """A derivation that is named as its own model."""
+
+    def _paragraph(self) -> str:
+        return (
+            "the file that is named as the model is this derivation itself; name the TOML file "
+            "in which the equations stand"
         )
 
 

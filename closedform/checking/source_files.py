@@ -6,6 +6,7 @@ from pathlib import Path
 
 from closedform.checking.source_errors import (
     NoSuchModelError,
+    OwnModelError,
     SourceEncodingError,
     SourceFileError,
 )
@@ -54,6 +55,10 @@ def _decoded(data: bytes, name: str) -> str:
         line, column = before.count("\n") + 1, len(before) - before.rfind("\n")
         place = Place(name, None, line, column)
         raise SourceEncodingError(place, data[error.start]) from None
+    nul = text.find("\0")
+    if nul >= 0:
+        place = Place(name, None, text.count("\n", 0, nul) + 1, nul - text.rfind("\n", 0, nul))
+        raise SourceEncodingError(place, 0)
     return text.replace("\r\n", "\n").replace("\r", "\n")
 
 
@@ -101,9 +106,11 @@ def is_there(path: Path) -> bool:
 def model_path(name: str, document: Path, place: Place) -> Path:
     """Return the path of a model file whose name counts from the folder of a document.
 
-    Raises:  NoSuchModelError.
+    Raises:  NoSuchModelError, OwnModelError.
     """
     path = document.parent / name
     if not is_there(path):
         raise NoSuchModelError(place, name, str(path))
+    if path.resolve() == document.resolve():
+        raise OwnModelError(place)
     return path

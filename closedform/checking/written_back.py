@@ -10,6 +10,7 @@ from closedform.algebra.elementary import Element
 from closedform.algebra.elementary.constant import Constant
 from closedform.algebra.elementary.tower import Tower, roots_in
 from closedform.algebra.fraction_field import Whole
+from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Value
 from closedform.checking.matrices import ExactMatrix
 from closedform.notation.written.tree import (
@@ -38,6 +39,8 @@ def written_back(value: Value, names: Names | None = None, time: str = "t") -> W
     """Return a formula of an exact value: real sines and cosines where the function is real.
 
     `names` says how names of the field are to be written, if not as they are.
+
+    Raises:  NotJudgedError for numbers of thousands of digits.
     """
     names = names or {}
     if isinstance(value, ExactMatrix):
@@ -184,7 +187,13 @@ def _is_number(polynomial: Whole) -> bool:
     return all(degree <= 0 for degree in polynomial.degrees())
 
 
+MOST_BITS = 13_000
+"""Binary digits of a number that is written out: some 4000 decimal ones."""
+
+
 def _fraction(value: Fraction) -> Written:
+    if max(value.numerator.bit_length(), value.denominator.bit_length()) > MOST_BITS:
+        raise NotJudgedError("there are numbers of thousands of digits in its right form")
     if value < 0:
         return Negation(_fraction(-value))
     if value.denominator == 1:
