@@ -60,6 +60,8 @@ class Ground:
     scope: Scope
     put_in: frozenset[str] = frozenset()
     """The parameters for which values stand."""
+    cuts: tuple[Written, ...] = ()
+    """Instants, besides those of the model, at which intervals are to end."""
 
     @property
     def size(self) -> int:
@@ -120,6 +122,11 @@ class Ground:
             ends.append(None if end is None else self.number(end))
         if not found:
             starts, ends = [self.number(self.truth.start)], [None]
+        for cut in map(self.number, self.cuts):
+            for k, (one, other) in enumerate(zip(starts, ends, strict=True)):
+                if (cut - one).sign() == 1 and (other is None or (other - cut).sign() == 1):
+                    starts[k : k + 1], ends[k : k + 1] = [one, cut], [cut, other]
+                    break
         two = self.field.one + self.field.one
         insides = [
             start + self.field.one if end is None else (start + end) / two
@@ -329,7 +336,8 @@ def _put(ground: Ground, known: Mapping[str, Written]) -> Ground:
     for name, formula in ground.truth.quantities:
         if formula is not None:
             scope = scope.with_symbols({name: exact(formula, scope)})
-    return Ground(ground.truth, ground.facts, ground.field, scope, frozenset(known))
+    put_in = frozenset(known)
+    return Ground(ground.truth, ground.facts, ground.field, scope, put_in, ground.cuts)
 
 
 def _put_partly(ground: Ground, names: frozenset[str]) -> Ground:
@@ -338,7 +346,8 @@ def _put_partly(ground: Ground, names: frozenset[str]) -> Ground:
     own = next((s for s in ground.stretches if s.inside == ground.scope.instant), None)
     values = ground.truth.values or {}
     known = {name: exact(values[name], left.scope) for name in sorted(names)}
-    left = replace(left, put_in=names, facts=ground.facts, scope=left.scope.with_symbols(known))
+    scope = left.scope.with_symbols(known)
+    left = replace(left, put_in=names, facts=ground.facts, scope=scope, cuts=ground.cuts)
     return left if own is None else left.within(own)
 
 
