@@ -43,10 +43,10 @@ def slipped(line: Line, rng: Random) -> Line | None:
         if what not in DIGIT_SLIPS:
             if line.judge(made, True)[0] or not line.judge(made, False)[1]:
                 continue
-        elif line.judge(made, False)[0]:
-            continue
-        elif what == "degrees for radians" and not line.judge(made, False)[1]:
-            continue
+        else:
+            right, plain = line.judge(made, False)
+            if right or (what == "degrees for radians" and not plain):
+                continue
         return replace(line, forms=made, wrong=True, slip=what, follows=False)
     return None
 
