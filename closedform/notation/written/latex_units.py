@@ -194,6 +194,8 @@ _PREFIX_COMMANDS = {
 
 def is_unit(text: str) -> bool:
     """Tell whether a text is a product of powers of units, as rad/s, N s/m or kg·m^-3."""
+    if re.match(r"\(?in\s", text):
+        return False  # the word: t in s
     factors = [factor for factor in _BETWEEN.split(_COMPACT.sub(" ", text)) if factor]
     forms = [_FACTOR.fullmatch(factor) for factor in factors]
     known = all(form and form["symbol"] in (*_SYMBOLS, "1") for form in forms)

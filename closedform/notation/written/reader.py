@@ -42,10 +42,13 @@ def read_latex(text: str, declared: Declared, *, place: Place = NOWHERE) -> Read
     powers, all brackets and their sizes, dots, primes and d/dt, matrices and products of them,
     cases, integrals, sums, limits, Laplace transforms, determinants, steps.  An argument without
     brackets goes on to the next function, exponential, sum, slash or sign of multiplication.
+    Behind a slash, names side by side without a gap are one denominator if none of them varies:
+    c/2m is c/(2m) and 1/RC is 1/(RC), but 1/2t is t/2 and k/m x is (k/m) x.
 
     Numbers keep their printed digits: decimal points and commas, groups of thousands, powers of
     ten, \num and \qty.  A unit behind a number goes to the statement, which keeps the number as
-    printed; degrees are multiplied by pi/180.
+    printed; degrees are multiplied by pi/180, a percentage is divided by 100.  A unit with a
+    prefix beside the time, as in e^{-t/5\,\mathrm{ms}}, is refused.
 
     Several statements are parted by commas, semicolons, words, wide spaces and line ends;
     conditions and notes beside them are kept with them.  Where careful readers differ, the

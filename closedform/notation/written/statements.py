@@ -8,11 +8,10 @@ from dataclasses import dataclass, field
 
 from lark import Token
 
-from closedform.notation.written.grammar import StoppedError, token, tree_of
-from closedform.notation.written.latex_units import is_scaled
+from closedform.notation.written.grammar import StoppedError, tree_of
 from closedform.notation.written.multiplicity import asks_for_number
 from closedform.notation.written.names import Names
-from closedform.notation.written.pairs import bounds, pairs
+from closedform.notation.written.pairs import bounds
 from closedform.notation.written.tree import (
     Apply,
     Array,
@@ -26,6 +25,7 @@ from closedform.notation.written.tree import (
     changed,
     walk,
 )
+from closedform.notation.written.unit_tokens import without_units
 from closedform.notation.written.written_errors import (
     StopError,
     UnexpectedPartError,
@@ -61,6 +61,8 @@ def statements_of(tokens: Sequence[Token], names: Names, text: str) -> tuple[Sta
     conditions: list[list[Token]] = []
     for marks, segment in _segments(tokens):
         notes = [str(mark.value) for mark in marks if mark.type == "TEXT"]
+        if notes and drafts and notes[0].startswith("in "):
+            _note_time(drafts, names, notes)
         (drafts[-1].notes if drafts else early).extend(notes)
         kinds = {mark.type for mark in marks}
         words = {str(mark.value) for mark in marks if mark.type == "WORD"}
@@ -89,6 +91,19 @@ def statements_of(tokens: Sequence[Token], names: Names, text: str) -> tuple[Sta
     drafts[0].notes[:0] = early
     drafts[0].conditions[:0] = conditions
     return tuple(_statement(draft, names, text) for draft in drafts)
+
+
+def _note_time(drafts: list[Draft], names: Names, notes: list[str]) -> None:
+    """Take the time before the words `in s` from what was read into the notes."""
+    items = drafts[-1].items
+    last = items[-1] if items else drafts[-1].tokens
+    if [one.value for one in last] != [Symbol(names.time)]:
+        return
+    if items:
+        items.pop()
+    elif len(drafts) > 1:
+        drafts.pop()
+    notes[0] = f"{names.time} {notes[0]}"
 
 
 def _segments(tokens: Sequence[Token]) -> list[tuple[list[Token], list[Token]]]:
@@ -198,12 +213,12 @@ def _counts(condition: list[Token], names: Names) -> bool:
 
 
 def _statement(draft: Draft, names: Names, text: str) -> Statement:
-    unit, chain = _without_units(draft.tokens, names)
+    unit, chain = without_units(draft.tokens, names)
     members, relations = _tree(chain, text)
     if draft.items:
         items = [members[-1]]
         for item in draft.items:
-            more, rest = _without_units(item, names)
+            more, rest = without_units(item, names)
             unit = unit or more
             items.append(_tree(rest, text)[0][0])
         members = (*members[:-1], Listing(tuple(items)))
@@ -212,7 +227,7 @@ def _statement(draft: Draft, names: Names, text: str) -> Statement:
         if _counts(condition, names):
             draft.notes.append(text[slice(*bounds(condition[0], condition[-1]))])
             continue
-        _, rest = _without_units(condition, names)
+        _, rest = without_units(condition, names)
         found, signs = _tree(rest, text)
         if signs:
             conditions.append(Range(found, signs))
@@ -225,43 +240,6 @@ def _statement(draft: Draft, names: Names, text: str) -> Statement:
         draft.notes.append("at 0^-")
     note = "; ".join(_WORDS.sub(r"\1", note) for note in draft.notes if note)
     return Statement(members, relations, unit, tuple(conditions), note, start, end)
-
-
-def _without_units(part: Sequence[Token], names: Names) -> tuple[str, list[Token]]:
-    """Return the unit at the end, or of a factor, and the tokens without units.
-
-    A percentage is a hundredth.  Beside the time a unit with a prefix is refused: which unit
-    the time has is not said.
-    """
-    unit, out, opened = "", [], []
-    for one in part:
-        if one.type != "UNIT":
-            out.append(one)
-            if one.type.endswith("OPEN"):
-                opened.append(len(out))
-            elif one.type.endswith("CLOSE") and opened:
-                opened.pop()
-        elif one.value == "%":
-            out.append(token("POSTFIX", "percent", *bounds(one)))
-        elif not opened:
-            unit = str(one.value)
-        elif is_scaled(str(one.value)) and _is_beside_time(part, one, names):
-            raise StopError(
-                UnusableNotationError,
-                *bounds(one),
-                str(one.value),
-                "a unit with a prefix stands beside the time; write the number without it",
-            )
-    return unit, out
-
-
-def _is_beside_time(part: Sequence[Token], unit: Token, names: Names) -> bool:
-    """Tell whether the time stands in the bracket in which a unit does."""
-    at = next(k for k, one in enumerate(part) if one is unit)
-    partners = pairs(part, "")
-    first = max((k for k, close in partners.items() if k < at < close), default=0)
-    inside = part[first : partners.get(first, len(part))]
-    return any(one.value == Symbol(names.time) for one in inside)
 
 
 def _tree(part: Sequence[Token], text: str) -> tuple[tuple[Written, ...], tuple[str, ...]]:

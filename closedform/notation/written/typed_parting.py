@@ -22,11 +22,15 @@ LABEL = re.compile(
     re.IGNORECASE,
 )
 NOTE = re.compile(
+    r"(?:(?:is|ist|est|with|mit)\s+(?:(?:an?|eine?|une?|der)\s+)?)?"
     r"(?:double|twice|triple|repeated|simple|(?:with )?multiplicity|mult\.?|\d[- ]?fold"
     r"|\(?algebraic|doppelt|(?:ein|zwei|drei|vier)fach"
-    r"|(?:mit (?:der )?)?vielfachheit)[^;=]*",
+    r"|(?:mit (?:der )?)?vielfachheit|\w+ in (?![\[({]))[^;=]*",
     re.IGNORECASE,
 )
+
+BESIDE = re.compile(r"(?:twice|doppelt|zweifach|dreifach)\s*(?:$|[,;\n])|\w+ in (?![\[({])")
+"""Words behind a comma that belong to the formula before it."""
 
 
 @dataclass
@@ -78,11 +82,9 @@ class Parting:
     def _goes_on(self, stop: int, begin: int) -> bool:
         between = {sign.kind for sign in self.signs.all[stop:begin]}
         last, first = self.signs.all[stop - 1].kind, self.signs.all[begin].kind
-        if between == {"COMMA"} and not self._is_declared(begin):
-            words = self.signs.text[self.signs.all[begin].start :]
-            return (
-                re.match(r"(?:twice|doppelt|zweifach|dreifach)\s*(?:$|[,;\n])", words) is not None
-            )
+        if between == {"COMMA"} and BESIDE.match(self.signs.text, self.signs.all[begin].start):
+            own = self._is_declared(begin)
+            return not own or self.signs.inside(begin, begin + 1) == self.declared.time
         if between == {"NEWLINE"}:
             return last in JOINING or first in JOINING
         condition = any(self.signs.all[m].kind == "WHEN" for m in range(self._sentence(stop), stop))
@@ -125,7 +127,8 @@ class Parting:
         for k in range(begin + 1, stop):
             sign = self.signs.all[k]
             inside = self.signs.text[sign.start + (sign.kind == "OPEN") : self._last(stop)]
-            named = sign.kind == "ATOM" and self._is_declared(k)
+            own = sign.kind == "ATOM" and self._is_declared(k)
+            named = own and self.signs.inside(k, k + 1) != self.declared.time
             if sign.spaced and NOTE.fullmatch(inside) and not named:
                 notes.append(self.signs.text[sign.start : self._last(stop)])
                 return begin, k - (self.signs.all[k - 1].kind == "COMMA"), " ".join(notes)
@@ -157,7 +160,8 @@ class Parting:
             for k in range(begin, stop)
         )
         unknown = [w for w in words if spelled_out(w)[0] not in self.declared.names]
-        return bool(plain and unknown and strange and len(unknown) == len(words))
+        measured = re.match(rf"(?:{re.escape(self.declared.time)} )?in [^\W_]", text)
+        return bool(measured or (plain and unknown and strange and len(unknown) == len(words)))
 
     def _counts(self, k: int, stop: int) -> bool:
         """Whether a bracket says how often the value before it counts: (2x), (3-fold)."""

@@ -61,6 +61,11 @@ def statements_of(signs: Signs, declared: Declared) -> tuple[Statement, ...]:
     return tuple(_merged(pieces))
 
 
+def _is_measure(text: str) -> bool:
+    """Whether a text is a unit that stays beside its number; degrees and percent do not."""
+    return is_unit(text) and text not in ("°", "deg", "%")
+
+
 def _is_condition(statement: Statement, time: str) -> bool:
     """Whether a statement is only a range of the time."""
     if not statement.relations or statement.conditions:
@@ -166,7 +171,22 @@ class _Statements(Parting):
             number, text = self._unit(begin, end, alone=len(members) == 1)
             if text:
                 members[place], unit = (begin, number + 1), text
+            elif (last := self._unit_behind(begin, end)) < end:
+                members[place], unit = (begin, last), self.signs.inside(last, end)
         return members, unit
+
+    def _unit_behind(self, begin: int, end: int) -> int:
+        """Return where a unit of two letters or more begins that ends a formula, else its end."""
+        for k in range(begin + 1, end):
+            sign, text = self.signs.all[k], self.signs.inside(k, end)
+            if sign.kind == "ATOM" and sign.spaced and sign.word < 0 and _is_measure(text):
+                words = re.findall(r"[^\W\d_]+", text)
+                own = {*self.declared.names, self.declared.time}
+                free = not own & {spelled_out(word)[0] for word in words}
+                operator = self.signs.all[k - 1].kind in ("TIMES", "OVER", "POWER", *SIGNED)
+                if free and not operator and len(words[0]) > 1 and isinstance(sign.value, Symbol):
+                    return k
+        return end
 
     def _unit(self, begin: int, end: int, *, alone: bool) -> tuple[int, str]:
         """Return where a signed number ends that a member is, and the unit behind it."""
@@ -183,7 +203,7 @@ class _Statements(Parting):
         text = text.strip("[]").replace("**", "^")
         text = text.replace("(", "").replace(")", "") if "^(" in text else text
         decimal = isinstance(value, Literal) and value.is_decimal
-        if not is_unit(text) or text in ("°", "deg", "%", self.declared.time):
+        if not _is_measure(text) or text == self.declared.time:
             return last, ""
         if alone and not decimal:
             return last, ""
