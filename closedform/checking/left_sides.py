@@ -254,7 +254,8 @@ def _of_spectral(name: str, facts: Facts) -> Left | None:
         return Left("transform", whose)
     if name in ("G", "H") and len(facts.inputs) == 1:
         return Left("transfer function")
-    return Left("characteristic polynomial") if name in POLYNOMIALS else None
+    known = name in POLYNOMIALS or name.removesuffix("_A") in POLYNOMIALS
+    return Left("characteristic polynomial") if known else None
 
 
 def _names_input(node: Written, facts: Facts) -> bool:

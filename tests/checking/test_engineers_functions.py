@@ -137,6 +137,8 @@ DERIVATIONS = (
         CASCADE,
         r"ok N=A+I=\begin{pmatrix}0&0&0\\1&0&0\\0&1&0\end{pmatrix},\quad N^3=0",
         r"bad N^2=0",
+        r"ok \chi_A(\lambda)=(\lambda+1)^3",
+        r"bad \chi_A(\lambda)=(\lambda-1)^3",
         r"ok (A+I)v_1=0\implies v_1=(0,0,1)^{\mathsf T};\qquad (A+I)v_2=v_1\implies"
         r" v_2=(0,1,0)^{\mathsf T}",
         r"bad (A+I)v_3=v_2\implies v_3=(2,0,0)^{\mathsf T}",

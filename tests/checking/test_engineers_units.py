@@ -69,6 +69,7 @@ DERIVATIONS = (
         r"ok t_{1/2} = 2.77\,\mathrm{h}",
         r"ok t_{1/2} = 166.4\,\mathrm{min}",
         r"bad t_{1/2} = 2.77\,\mathrm{min}",
+        r"bad t_{1/2}=\frac{\ln2}{k}=2.77\,\mathrm{min} = 0.693",
         r"ok k = 0.25\,\mathrm{h^{-1}}",
     ),
     written(

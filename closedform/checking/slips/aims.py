@@ -148,7 +148,7 @@ def true_value(trial: Trial, finding: Finding) -> Value | None:
         return None if finding.right is None else trial.setting.value(finding.right, trial.ground)
     alone = judge(trial.with_member(trial.tree), trial.setting)
     pairs = alone.pairs or finding.pairs
-    return pairs[0][1] if pairs else None
+    return pairs[0][1] if pairs and pairs[0][1].field is trial.ground.field else None
 
 
 def opened_stretches(claim: Claim, setting: Setting) -> list[Stretch]:

@@ -170,7 +170,9 @@ def _wrong(trial: Trial, true: Element) -> Iterator[tuple[str, Element]]:
 def _of_modes(trial: Trial, true: Element) -> Iterator[tuple[str, Element]]:
     """Yield other quantities of the modes: the other frequency, the decay rate."""
     field, says = true.field, trial.claim.says
-    for value in trial.ground.eigenvalues:
+    own = (trial.ground, trial.setting.ground, trial.setting.ground_for(trial.tree))
+    ground = next((ground for ground in own if ground.field is field), None)
+    for value in ground.eigenvalues if ground is not None else ():
         real, imaginary = field.re(value), field.im(value)
         if imaginary.is_zero:
             continue
