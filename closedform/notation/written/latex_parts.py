@@ -23,11 +23,11 @@ from closedform.notation.written.tree import (
     INFINITY,
     Symbol,
 )
+from closedform.notation.written.words import word_of
 
 __all__ = ["LatexParts"]
 
-LONGEST_RUN = 60
-"""Letters side by side that can be one name."""
+LONGEST_RUN = 60  # letters side by side that can be one name
 OPENING = {"(": "(", "[": "[", "lbrace": "{", "{": "{", "lbrack": "[", "lparen": "("}
 CLOSING = {")": "(", "]": "[", "rbrace": "{", "}": "{", "rbrack": "[", "rparen": "("}
 
@@ -88,6 +88,8 @@ class LatexParts(LatexScripted):
                 return self.letters(at, end, font, out)
             case "{":
                 return self.braces(at, end, font, out)
+            case "'" if out and out[-1].type == "MATRIX_CLOSE":
+                out.append(token("POSTFIX", "transpose", raw.start, raw.end))
             case "^" | "_" | "'":
                 scripts, at = self.scripts(at, end)
                 self.scripted(scripts, raw, out)
@@ -206,6 +208,10 @@ class LatexParts(LatexScripted):
         known = self.names.find
         if name.upright and name.spelling in FUNCTION_WORDS and known(name.spelling) is None:
             return self.function(at, end, name.spelling, (name.start, name.end), out)
+        worded = name.upright and len(name.spelling) > 1 and known(name.spelling) is None
+        if worded and (word := word_of(name.spelling)) and not self.scripts(at, end)[0].end:
+            out.append(token("WORD", word, name.start, name.end))
+            return at
         if name.spelling == "Delta" and known("Delta") is None and at < end:
             following, behind = self.nucleus(at, end) if self.is_letter(at) else (None, at)
             if following is not None and not following.spelling.startswith("Delta"):

@@ -178,7 +178,7 @@ RELATION_SIGNS = {
 
 SEPARATING = _words(
     "Rightarrow implies Longrightarrow iff Leftrightarrow Longleftrightarrow therefore because "
-    "impliedby Leftarrow Longleftarrow leadsto land wedge"
+    "impliedby Leftarrow Longleftarrow leadsto land wedge lor vee"
 )
 """Commands between two statements."""
 

@@ -29,7 +29,7 @@ FUNCTIONS: Mapping[str, Callable[..., Any]] = {
     "delta": sympy.DiracDelta,
     "det": sympy.Determinant,
     "trace": sympy.Trace,
-    "transpose": lambda m: m.T,
+    "transpose": lambda m: getattr(m, "T", m),
     "inverse": lambda m: m**-1,
     "adj": lambda m: m.adjugate(),
     "norm": lambda m: m.norm(),

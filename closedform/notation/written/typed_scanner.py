@@ -237,7 +237,7 @@ class Scanner:
             yield from self._word(end + 1, before)
             return
         keyword = KEYWORDS.get(word.lower())
-        if word == "et" and not (
+        if word in ("et", "or", "ou") and not (
             self.text[at - 1 : at].isspace() and self.text[end : end + 1].isspace()
         ):
             keyword = None

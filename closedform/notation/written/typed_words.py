@@ -84,9 +84,11 @@ FUNCTION_WORDS: Mapping[str, str] = {
 PACKAGES = frozenset({"np", "numpy", "sp", "sympy", "math", "cmath", "scipy", "linalg"})
 """Prefixes of functions and matrices that are copied from programs."""
 KEYWORDS = {
-    **dict.fromkeys(("for", "if", "when", "für", "falls", "wenn", "while", "where"), "WHEN"),
-    **dict.fromkeys(("otherwise", "else", "sonst", "elsewhere"), "OTHERWISE"),
-    **dict.fromkeys(("and", "und", "sowie", "et"), "AND"),
+    **dict.fromkeys(
+        ("for", "if", "when", "für", "falls", "wenn", "while", "where", "pour", "lorsque"), "WHEN"
+    ),
+    **dict.fromkeys(("otherwise", "else", "sonst", "elsewhere", "sinon"), "OTHERWISE"),
+    **dict.fromkeys(("and", "und", "sowie", "et", "or", "oder", "ou"), "AND"),
     **dict.fromkeys(("approx", "approximately", "about"), "ABOUT"),
 }
 SHORT = frozenset({"sh", "ch", "th", "tg", "tr", "re", "im", "lg", "angle", "real", "root", "arg"})
@@ -154,6 +156,8 @@ class Words:
             return Piece(self._declared(name, dots), "", start, end)
         if text in FUNCTION_WORDS and (text not in SHORT or bracket):
             return Piece(None, FUNCTION_WORDS[text], start, end)
+        if dots and (rate := self.names.dotted(text, dots)):
+            return Piece(self._declared(rate, 0), "", start, end)
         derived = DOTTED.fullmatch(text)
         if derived:
             stem = self.name(derived["stem"] + derived["rest"])
