@@ -65,9 +65,16 @@ def sympy_value(item: Statement | Reading, declared: Declared = NOBODY) -> Any:
 
 
 def sympy_matrix(item: Statement | Reading, declared: Declared = NOBODY) -> Any:
-    """Return the matrix that a text claims, the last member of its last chain, multiplied out."""
+    """Return the matrix that a text claims, the last member of its last chain, multiplied out.
+
+    Raises ValueError if what stands there is no matrix.
+    """
     value = sympy_value(item, declared)
-    return value if isinstance(value, sympy.MatrixBase) else sympy.Matrix(value.doit())
+    if isinstance(value, sympy.MatrixBase):
+        return value
+    if not isinstance(value, sympy.MatrixExpr):
+        raise ValueError(f"{value} is no matrix")  # noqa: TRY004  it is of the text, not of a type
+    return sympy.Matrix(value.doit())
 
 
 def sympy_eigenvalues(item: Statement | Reading, declared: Declared = NOBODY) -> list[Any]:
