@@ -29,7 +29,7 @@ from closedform.checking.matrices import (
     identity,
 )
 from closedform.checking.setting import Setting
-from closedform.notation.written.tree import Symbol, walk
+from closedform.notation.written.tree import Symbol, Written, walk
 
 __all__ = ["carried_from"]
 
@@ -170,6 +170,26 @@ def _diagonals(setting: Setting, ground: Ground) -> Iterator[Derived]:
                     values += [value] * (count or 1)
     if len(values) == ground.size:
         yield Derived(diagonal(ground.field, values), root)
+    if ground.size == DEGREE:
+        yield from _as_far_as_known(_of_quantities(setting, ground))
+
+
+DEGREE = 2
+
+
+def _of_quantities(setting: Setting, ground: Ground) -> Iterator[Derived]:
+    """Yield the roots of s^2 + 2 zeta omega s + omega^2 for a wrong zeta or omega_n."""
+    field = ground.field
+    trace, product = ground.matrix.trace(), ground.matrix.determinant()
+    natural = [Derived(field.sqrt(product)), *_stated("natural frequency", setting, ground)]
+    ratio = [
+        Derived(-trace / (field.number(2) * field.sqrt(product))),
+        *_stated("damping ratio", setting, ground),
+    ]
+    omega, zeta = natural[-1], ratio[-1]
+    if isinstance(omega.value, Element) and isinstance(zeta.value, Element):
+        half, root = zeta.value * omega.value, field.sqrt(zeta.value**2 - field.one) * omega.value
+        yield omega.joined(diagonal(field, [root - half, -root - half]), zeta)
 
 
 def _canonical(setting: Setting, ground: Ground) -> Iterator[Derived]:
@@ -461,6 +481,12 @@ def _tried(rule: Rule, claim: Claim, setting: Setting, ground: Ground) -> int | 
 
 def _roots_of_polynomial(claim: Claim, setting: Setting, ground: Ground) -> int | None:
     """Return the root if all listed eigenvalues solve the author's wrong polynomial."""
+    listed = [form for forms, _ in roots_claimed(claim) for form in forms[-1:]]
+    for own in _as_far_as_known(_of_quantities(setting, ground)) if ground.size == DEGREE else ():
+        if own.root is not None and isinstance(own.value, ExactMatrix):
+            true = [own.value.rows[k][k] for k in range(DEGREE)]
+            if all(_is_one_of(form, true, claim, setting, ground) for form in listed):
+                return own.root
     for entry in setting.author.all("characteristic polynomial"):
         if entry.root is None:
             continue
@@ -481,6 +507,16 @@ def _roots_of_polynomial(claim: Claim, setting: Setting, ground: Ground) -> int 
             ):
                 return matrix.root
     return None
+
+
+def _is_one_of(
+    form: Written, values: list[Element], claim: Claim, setting: Setting, ground: Ground
+) -> bool:
+    opened, scope = setting.opened(form), setting.scope_of(ground)
+    return any(
+        compare(opened, value, scope, ground, approximate=claim.approximate).passes
+        for value in values
+    )
 
 
 def _vector_of(claim: Claim, setting: Setting, ground: Ground) -> int | None:

@@ -194,18 +194,23 @@ def judged(claim: Claim, setting: Setting) -> Judgement:
             reason = "the line that gives the angle leaves its quadrant open"
             return Judgement(claim, Finding("not read", reason))
     if _ends_right(claim, setting):
-        return Judgement(claim, finding)
-    try:
-        root = (
-            carried_from(claim, setting)
-            or rests_on_constants(claim, setting)
-            or _by_mended_names(claim, setting)
-        )
-    except OUTSIDE:
-        root = None
+        return Judgement(claim, _with_right_names(claim, setting) or finding)
+    root = _root(claim, setting)
     if root is None:
         return Judgement(claim, finding)
     return Judgement(claim, replace(finding, word="carried"), root)
+
+
+def _root(claim: Claim, setting: Setting) -> int | None:
+    """Return the number of the wrong line that a failing claim rests on."""
+    for rule in (carried_from, rests_on_constants, _by_mended_names):
+        try:
+            root = rule(claim, setting)
+        except OUTSIDE:
+            continue
+        if root is not None:
+            return root
+    return None
 
 
 def _ends_right(claim: Claim, setting: Setting) -> bool:
@@ -214,6 +219,16 @@ def _ends_right(claim: Claim, setting: Setting) -> bool:
         return False
     ends = tuple(replace(group, values=group.values[-1:]) for group in claim.groups)
     return claim.says not in EARLIER and judge(replace(claim, groups=ends), setting).passes
+
+
+def _with_right_names(claim: Claim, setting: Setting) -> Finding | None:
+    """Return the finding on a claim that holds with the right values of names given wrongly."""
+    wrong = _wrong_names(claim, setting.author)
+    if not wrong:
+        return None
+    found = judge(claim, replace(setting, author=setting.author.mended(wrong)))
+    note = f"it holds with the right value of {', '.join(wrong)}"
+    return replace(found, notes=(*found.notes, note)) if found.passes else None
 
 
 def _resting(claim: Claim, finding: Finding, setting: Setting) -> Judgement:
