@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 from typing import Literal as OneOf
@@ -12,7 +11,7 @@ from flint import acb, arb, ctx
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.balls import NoValueError, Quantities
 from closedform.checking.digits import DigitsMatch, largest_difference, match_digits, told
-from closedform.checking.errors import NotJudgedError, SizeError
+from closedform.checking.errors import NotJudgedError
 from closedform.checking.exact import Scope, Value, exact
 from closedform.checking.ground import SPECTRAL, Ground
 from closedform.checking.matrices import ExactMatrix
@@ -60,13 +59,14 @@ def compare(
     try:
         value = _single(exact(claimed, scope))
     except NotElementaryError as error:
-        return _by_digits(claimed, true, ground, unless=error.reason, approximate=approximate)
+        return _by_digits(claimed, true, ground, unless=str(error), approximate=approximate)
     except ZeroDivisionError:
         return Comparison("different", "it divides by zero")
     value, true = _zeros(value, true)
     shapes = _shape(value), _shape(true)
     if shapes[0] != shapes[1]:
-        return Comparison("different", str(SizeError("a comparison", *_as_sizes(shapes))))
+        own, wanted = map(_size_text, shapes)
+        return Comparison("different", f"it is {own}, and ought to be {wanted}")
     different = _differing(value, true)
     if not different:
         return Comparison("equal")
@@ -216,11 +216,8 @@ def _shape(value: Value) -> tuple[int, int] | None:
     return value.shape if isinstance(value, ExactMatrix) else None
 
 
-def _as_sizes(
-    shapes: Sequence[tuple[int, int] | None],
-) -> tuple[tuple[int, int], tuple[int, int]]:
-    one, other = ((1, 1) if shape is None else shape for shape in shapes)
-    return one, other
+def _size_text(shape: tuple[int, int] | None) -> str:
+    return "a single number" if shape is None else f"{shape[0]} by {shape[1]}"
 
 
 def _differing(value: Value, true: Value) -> tuple[tuple[int, int], ...]:

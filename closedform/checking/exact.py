@@ -250,6 +250,8 @@ def _power(node: Power, scope: Scope) -> Value:
         if rational is None or rational.denominator != 1:
             raise NotJudgedError("a matrix has a power that is no integer")
         return base.power(int(rational))
+    if rational == 0 and base.is_zero:
+        raise NotJudgedError("zero to the power of zero, which has no agreed value")
     if rational is not None and rational.denominator == 1:
         return base ** int(rational)
     if rational is not None:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
@@ -193,7 +194,8 @@ def says_text(claim: Claim, judgements: Sequence[Judgement] = ()) -> str:
         return claim.says
     same = [j.claim.subject for j in judgements if j.claim.says == claim.says]
     subjects = ", ".join(dict.fromkeys(subject for subject in same if subject))
-    return f"{claim.says} {subjects or claim.subject}".strip()
+    short = re.sub("'{5,}", lambda primes: f"^({len(primes[0])})", subjects or claim.subject)
+    return f"{claim.says} {short}".strip()
 
 
 def _ambiguities(read: ReadLine) -> tuple[str, ...]:

@@ -6,12 +6,15 @@ from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 
+from flint import fmpq, fmpq_mat
+
 from closedform.algebra.elementary import Element, ElementaryField
 from closedform.checking.errors import NotJudgedError, SizeError
 
 __all__ = ["ExactMatrix", "characteristic_coefficients", "column", "diagonal", "identity"]
 
 LARGEST_EXPANDED = 5
+LARGEST_WITHOUT_NUMBERS = 12
 LARGEST_POWER = 60
 
 
@@ -110,6 +113,9 @@ class ExactMatrix:
         """Return the inverse, by elimination; pivots are entries that are not zero."""
         self.demand_square("an inverse")
         size = self.shape[0]
+        numbers = _rational(self)
+        if numbers is not None:
+            return _of_rational(numbers.inv(), self.field)
         unit = identity(self.field, size)
         rows = [[*row, *more] for row, more in zip(self.rows, unit.rows, strict=True)]
         if _reduced(rows, size)[0] < size:
@@ -120,9 +126,12 @@ class ExactMatrix:
         """Return the determinant, by expansion along the sparsest row.
 
         That of a larger matrix is (-1)^n c_0, with the constant coefficient c_0 of the
-        characteristic polynomial.
+        characteristic polynomial.  Raises NotJudgedError beyond `LARGEST_WITHOUT_NUMBERS`
+        rows unless all entries are rational numbers.
         """
         self.demand_square("a determinant")
+        if self.shape[0] > LARGEST_WITHOUT_NUMBERS and _rational(self) is None:
+            raise NotJudgedError(f"a determinant of {self.shape[0]} rows that are no numbers")
         if self.shape[0] > LARGEST_EXPANDED:
             constant = characteristic_coefficients(self)[0]
             return -constant if self.shape[0] % 2 else constant
@@ -182,6 +191,9 @@ def characteristic_coefficients(matrix: ExactMatrix) -> list[Element]:
     Source:  V. N. Faddeeva, Computational Methods of Linear Algebra (1959), section 24.
     """
     field, size = matrix.field, matrix.shape[0]
+    numbers = _rational(matrix)
+    if numbers is not None:
+        return [_number(field, c) for c in numbers.charpoly().coeffs()]
     coefficients, product = [field.one], identity(field, size)
     for k in range(1, size + 1):
         product = matrix @ product
@@ -189,6 +201,22 @@ def characteristic_coefficients(matrix: ExactMatrix) -> list[Element]:
         coefficients.append(value)
         product = product + identity(field, size).scaled(value)
     return coefficients[::-1]
+
+
+def _rational(matrix: ExactMatrix) -> fmpq_mat | None:
+    """Return a matrix all of whose entries are rational numbers, None if one is not."""
+    numbers = [entry.as_fraction() for entry in matrix.entries]
+    known = [fmpq(x.numerator, x.denominator) for x in numbers if x is not None]
+    return fmpq_mat(*matrix.shape, known) if len(known) == len(numbers) else None
+
+
+def _of_rational(numbers: fmpq_mat, field: ElementaryField) -> ExactMatrix:
+    rows = numbers.tolist()
+    return ExactMatrix(field, tuple(tuple(_number(field, x) for x in row) for row in rows))
+
+
+def _number(field: ElementaryField, value: fmpq) -> Element:
+    return field.number(Fraction(int(value.p), int(value.q)))
 
 
 def _dot(row: Sequence[Element], entries: Sequence[Element], zero: Element) -> Element:

@@ -13,6 +13,8 @@ __all__ = ["LARGEST_EXPONENT", "Constant", "Parts"]
 
 LARGEST_EXPONENT = 4096
 LARGEST_PRODUCT = 200_000
+MOST_PAIRS = 40_000
+"""Pairs of products of roots that are multiplied for one product: 200 with 200."""
 """Terms that are multiplied with one another in a product of two polynomials."""
 
 Parts = dict[int, Whole]
@@ -81,6 +83,8 @@ class Constant:
         below = self.below * other.below
         if len(two) == 1 and 0 in two:
             return _lowest(tower, _scaled(one, two[0]), below)
+        if len(one) * len(two) > MOST_PAIRS:
+            raise NotElementaryError("it takes too many square roots to be worked out")
         parts: Parts = {}
         for m, p in one.items():
             for n, q in two.items():

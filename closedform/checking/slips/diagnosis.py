@@ -50,6 +50,7 @@ from closedform.checking.slips.spectrum_slips import (
 )
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.verdict import Slip
+from closedform.notation.written.tree import Array
 
 __all__ = ["diagnosed"]
 
@@ -118,6 +119,8 @@ def diagnosed(claim: Claim, finding: Finding, setting: Setting) -> tuple[Slip | 
 
 def _has_its_size(trial: Trial) -> bool:
     """Whether a member has as many entries as its true value: else no one change mends it."""
+    if trial.claim.says in ("P", "P inverse", "J") and isinstance(trial.tree, Array):
+        return len(trial.tree.rows) == trial.ground.size
     values = trial.values(trial.tree) or ()
     return all(
         len(own) == len(point.true) for own, point in zip(values, trial.points, strict=False)
