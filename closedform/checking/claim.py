@@ -43,7 +43,6 @@ KINDS = (
     "identity",
     "definition",
     "amplitude",
-    "phase",
 )
 """What a line can claim.  `identity` is a chain that is to hold by itself, `definition` a name
 for something, `equation` one of the model's own."""

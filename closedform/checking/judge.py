@@ -22,6 +22,7 @@ from closedform.checking.constants import (
 from closedform.checking.cuts import with_cuts
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.instants import at_instants
+from closedform.checking.judge_amplitude import judge_amplitude
 from closedform.checking.judge_equations import judge_equation
 from closedform.checking.judge_functions import (
     judge_block_exponential,
@@ -96,6 +97,7 @@ JUDGES: Mapping[str, Judge] = {
     "initial value": judge_value,
     "identity": judge_identity,
     "definition": judge_definition,
+    "amplitude": judge_amplitude,
     **dict.fromkeys(QUANTITIES, judge_quantity),
 }
 """What judges each kind of claim; kinds that are not here are judged as identities."""

@@ -17,10 +17,10 @@ from closedform.checking.meant import as_meant
 from closedform.checking.naming import in_order
 from closedform.checking.recognise import claims_of
 from closedform.checking.setting import Finding, Setting
-from closedform.checking.slips import diagnosed
+from closedform.checking.slips import diagnosed, right_form
 from closedform.checking.truth import Truth
 from closedform.checking.verdict import LineVerdict, Slip, Word
-from closedform.notation.written.tree import Statement, Written, walk
+from closedform.notation.written.tree import Statement, Symbol, Written, changed, walk
 
 __all__ = ["JudgedLine", "judged_lines", "verdict_on"]
 
@@ -167,7 +167,7 @@ def verdict_on(line: JudgedLine) -> LineVerdict:
         says_text(gravest.claim, line.judgements),
         finding.word,
         reason,
-        _right(finding, slip),
+        _right(gravest.claim, finding, slip, line.setting),
         slip,
         gravest.carried_from,
         (*line.notes, *finding.notes),
@@ -180,12 +180,29 @@ def _is_small(claim: Claim) -> bool:
     return len([node for value in claim.values for node in walk(value)]) <= MOST_NODES
 
 
-def _right(finding: Finding, slip: Slip | None) -> Written | None:
-    """Return the right form of a line that does not hold, near to what stands there."""
+def _right(claim: Claim, finding: Finding, slip: Slip | None, setting: Setting) -> Written | None:
+    """Return the right form of a line that does not hold, near to what stands there.
+
+    Names that only the solution of the model has are put in: the author does not know them.
+    """
     if finding.passes:
         return None
     mended = slip.mended if slip is not None else None
-    return finding.right if mended is None else mended
+    right = right_form(claim, finding, setting) if mended is None else mended
+    return None if right is None else _spelled_out(right, setting)
+
+
+def _spelled_out(tree: Written, setting: Setting) -> Written:
+    """Return a formula with the formulas of names that the author has not defined."""
+    formulas = {name: f for name, f in setting.ground.truth.quantities if f is not None}
+    known = set(setting.author.definitions)
+
+    def change(node: Written) -> Written | None:
+        if not isinstance(node, Symbol) or node.name in known or node.name not in formulas:
+            return None
+        return changed(formulas[node.name], change)
+
+    return changed(tree, change)
 
 
 def says_text(claim: Claim, judgements: Sequence[Judgement] = ()) -> str:

@@ -86,7 +86,6 @@ VARIANTS = {
     "identities": "identity",
     "name": "definition",
     "abbreviation": "definition",
-    "phase angle": "phase",
 }
 """What people say beside the words of `KINDS`, by which of these is meant."""
 
