@@ -5,9 +5,9 @@ from __future__ import annotations
 from pathlib import Path
 
 from closedform.algebra.elementary import Element, ElementaryField
-from closedform.checking.exact import Scope, exact
-from closedform.checking.ground import Ground, ground_of
+from closedform.checking.standing.ground import Ground, ground_of
 from closedform.checking.truth import Truth
+from closedform.checking.values.exact import Scope, exact
 from closedform.errors import InputError, Place
 from closedform.notation.comparison import read_comparison
 from closedform.notation.errors import quoted

@@ -5,8 +5,8 @@ from __future__ import annotations
 from pathlib import Path
 
 from closedform.checking.cases import Grounds, allowed_cases
-from closedform.checking.judged_lines import JudgedLine, judged_lines, verdict_on
-from closedform.checking.source import Source, read_source
+from closedform.checking.judging.judged_lines import JudgedLine, judged_lines, verdict_on
+from closedform.checking.source.reading import Source, read_source
 from closedform.checking.truth import Truth
 from closedform.checking.truths.solved import truths_of
 from closedform.checking.verdict import CheckReport

@@ -7,7 +7,7 @@ from pathlib import Path
 
 from closedform.checking.cases import Grounds, allowed_cases
 from closedform.checking.claim import SourceLine
-from closedform.checking.judged_lines import judged_lines, verdict_on
+from closedform.checking.judging.judged_lines import judged_lines, verdict_on
 from closedform.checking.truths.solved import truths_of
 from closedform.checking.verdict import LineVerdict
 from closedform.model import DrivenModel, Model, ParametricModel, model_from

@@ -7,7 +7,7 @@ from pathlib import Path
 
 import pytest
 
-from closedform.checking.units import read_unit, seconds_in_time
+from closedform.checking.standing.units import read_unit, seconds_in_time
 from tests.checking.engineers import Written, written
 
 MOUNT = """

@@ -12,9 +12,9 @@ from scipy.optimize import linprog
 
 from closedform.algebra.elementary import Element, ElementaryField
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import Scope, exact
-from closedform.checking.matrices import ExactMatrix, column
-from closedform.checking.rounded_vectors import rounded_direction
+from closedform.checking.judging.rounded_vectors import rounded_direction
+from closedform.checking.values.exact import Scope, exact
+from closedform.checking.values.matrices import ExactMatrix, column
 from closedform.notation.written.tree import (
     Constant,
     Declared,

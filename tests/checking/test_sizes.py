@@ -8,7 +8,7 @@ import pytest
 
 from closedform.checking.check import check_lines
 from closedform.checking.claim import SourceLine
-from closedform.checking.source import Source
+from closedform.checking.source.reading import Source
 from closedform.model import model_from
 
 LINES = [

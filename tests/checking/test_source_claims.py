@@ -9,8 +9,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from closedform.checking.claim import KINDS
-from closedform.checking.source import Source, read_source
-from closedform.checking.source_errors import (
+from closedform.checking.source.errors import (
     ClaimFormulaError,
     ModelHandedInError,
     NoFormulaError,
@@ -23,7 +22,8 @@ from closedform.checking.source_errors import (
     SourceValueError,
     UnknownKindError,
 )
-from closedform.checking.source_words import VARIANTS, kind_of
+from closedform.checking.source.reading import Source, read_source
+from closedform.checking.source.words import VARIANTS, kind_of
 from closedform.errors import InputError, Place
 
 MODEL = 'model = "cart.toml"\n'

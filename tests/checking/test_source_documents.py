@@ -9,8 +9,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from closedform.checking.claim import KINDS, SourceLine
-from closedform.checking.source import Source, read_source
-from closedform.checking.source_errors import (
+from closedform.checking.source.errors import (
     LineReferenceError,
     NoFormulaError,
     NoModelError,
@@ -24,7 +23,8 @@ from closedform.checking.source_errors import (
     StrayRemarkError,
     UnknownKindError,
 )
-from closedform.checking.source_files import LARGEST_DOCUMENT
+from closedform.checking.source.files import LARGEST_DOCUMENT
+from closedform.checking.source.reading import Source, read_source
 from closedform.errors import InputError
 from closedform.notation.documents.errors import IncludedFileError
 

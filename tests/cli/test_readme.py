@@ -6,7 +6,7 @@ import re
 from pathlib import Path
 
 from closedform.checking.claim import KINDS
-from closedform.checking.source_words import WORDS
+from closedform.checking.source.words import WORDS
 from closedform.checking.verdict import WORDS as VERDICTS
 from tests.cli.commanding import ROOT, run
 

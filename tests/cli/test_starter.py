@@ -8,7 +8,7 @@ import pytest
 from typer.testing import CliRunner
 
 import closedform
-from closedform.checking.source import read_source
+from closedform.checking.source.reading import read_source
 from closedform.cli.commands import app
 from tests.cli.commanding import ROOT, everything, run
 

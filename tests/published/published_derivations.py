@@ -9,7 +9,7 @@ from typing import Any
 
 from closedform.checking.check import check_lines
 from closedform.checking.claim import SourceLine
-from closedform.checking.source import Source
+from closedform.checking.source.reading import Source
 from closedform.checking.verdict import LineVerdict
 from closedform.model import DrivenModel, Model, ParametricModel, model_from
 

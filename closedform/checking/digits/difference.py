@@ -9,7 +9,7 @@ from fractions import Fraction
 from flint import acb, arb, ctx
 
 from closedform.algebra.enclosure import ball_of
-from closedform.checking.balls import Quantities, enclose_written
+from closedform.checking.balls.enclosing import Quantities, enclose_written
 from closedform.notation.written.tree import Written
 
 __all__ = ["Difference", "largest_difference"]

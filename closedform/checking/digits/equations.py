@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 from flint import acb, arb, arb_mat, ctx
 
-from closedform.checking.balls import Quantities, enclose_written
+from closedform.checking.balls.enclosing import Quantities, enclose_written
 from closedform.checking.digits.instants import Point
 from closedform.checking.digits.slopes import Plan, planned
 from closedform.notation.written.tree import Written

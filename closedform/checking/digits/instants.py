@@ -7,7 +7,7 @@ from fractions import Fraction
 
 from flint import acb, arb, fmpq
 
-from closedform.checking.balls import Quantities, enclose_written
+from closedform.checking.balls.enclosing import Quantities, enclose_written
 from closedform.notation.written.tree import (
     EULER,
     Apply,

@@ -6,7 +6,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Literal as OneOf
 
-from closedform.checking.balls import Quantities
+from closedform.checking.balls.enclosing import Quantities
 from closedform.checking.digits.instants import Between, Samples
 from closedform.checking.digits.rounding import Judged, decimal_text
 from closedform.checking.digits.search import Setting, found_numbers, is_rounding

@@ -10,7 +10,7 @@ from itertools import combinations, islice
 from flint import acb, arb, ctx
 
 from closedform.algebra.enclosure import ball_of
-from closedform.checking.balls import Quantities
+from closedform.checking.balls.enclosing import Quantities
 from closedform.checking.digits.equations import Equations, compared
 from closedform.checking.digits.instants import Between, Samples, exact_rates, points
 from closedform.checking.digits.newton import CERTAIN_BITS, certified, determined, refined

@@ -9,8 +9,8 @@ from collections.abc import Callable, Iterable, Mapping, Sequence
 
 from flint import acb, arb
 
-from closedform.checking.ball_functions import NoValueError, apply_function, power
-from closedform.checking.balls import enclose_written
+from closedform.checking.balls.enclosing import enclose_written
+from closedform.checking.balls.functions import NoValueError, apply_function, power
 from closedform.checking.digits.unknowns import index_of
 from closedform.notation.written.tree import (
     EULER,

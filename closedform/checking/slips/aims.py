@@ -11,14 +11,14 @@ from flint import acb, arb, ctx
 from closedform.algebra.elementary import NotElementaryError
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import Value, applies
-from closedform.checking.ground import SPECTRAL, Ground, Stretch
-from closedform.checking.judge import judge
-from closedform.checking.judge_functions import solution_value
-from closedform.checking.matrices import ExactMatrix
-from closedform.checking.setting import Finding, Setting
+from closedform.checking.judging.functions import solution_value
+from closedform.checking.judging.judge import judge
 from closedform.checking.slips.measuring import real, size
 from closedform.checking.slips.trial import BITS, SPECTRAL_SAMPLE, Point, Trial
+from closedform.checking.standing.ground import SPECTRAL, Ground, Stretch
+from closedform.checking.standing.setting import Finding, Setting
+from closedform.checking.values.exact import Value, applies
+from closedform.checking.values.matrices import ExactMatrix
 from closedform.notation.written.tree import Jet, Symbol, Written, walk
 
 __all__ = ["aimed", "opened_stretches", "true_value"]

@@ -5,10 +5,9 @@ from __future__ import annotations
 from collections.abc import Callable, Iterator
 
 from closedform.algebra.elementary import NotElementaryError
-from closedform.checking.balls import NoValueError
+from closedform.checking.balls.enclosing import NoValueError
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.setting import Finding, Setting
 from closedform.checking.slips.aims import aimed
 from closedform.checking.slips.differentiating import derivatives, forced_signs
 from closedform.checking.slips.edits import (
@@ -49,6 +48,7 @@ from closedform.checking.slips.spectrum_slips import (
     transformations,
 )
 from closedform.checking.slips.trial import Candidate, Trial
+from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.verdict import Slip
 from closedform.notation.written.tree import Array
 

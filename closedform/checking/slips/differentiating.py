@@ -6,13 +6,13 @@ from collections.abc import Callable, Iterator
 
 from closedform.algebra.elementary import Element
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import Value
-from closedform.checking.ground import Stretch
-from closedform.checking.judge_functions import solution_value
-from closedform.checking.matrices import characteristic_coefficients
+from closedform.checking.judging.functions import solution_value
 from closedform.checking.slips import names
 from closedform.checking.slips.motion import Wrong, where_equal
 from closedform.checking.slips.trial import Candidate, Trial
+from closedform.checking.standing.ground import Stretch
+from closedform.checking.values.exact import Value
+from closedform.checking.values.matrices import characteristic_coefficients
 
 __all__ = ["derivatives", "forced_signs"]
 

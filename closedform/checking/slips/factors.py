@@ -9,8 +9,6 @@ from fractions import Fraction
 from flint import acb, arb, ctx
 
 from closedform.algebra.elementary import Element
-from closedform.checking.ground import SPECTRAL
-from closedform.checking.matrices import ExactMatrix
 from closedform.checking.slips import names
 from closedform.checking.slips.making import ONE, negated, over, terms_of, times
 from closedform.checking.slips.measuring import real, size
@@ -20,7 +18,9 @@ from closedform.checking.slips.solving import simplest
 from closedform.checking.slips.spots import put
 from closedform.checking.slips.trial import BITS, Candidate, Trial
 from closedform.checking.slips.wording import part_text
-from closedform.checking.written_back import written_back
+from closedform.checking.standing.ground import SPECTRAL
+from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import Literal, Sum, Written
 

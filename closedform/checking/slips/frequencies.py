@@ -8,7 +8,7 @@ from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.slips import names
 from closedform.checking.slips.trial import Candidate, Trial
-from closedform.checking.written_back import written_back
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Apply, Written, changed, walk
 
 __all__ = ["other_frequencies"]

@@ -16,7 +16,7 @@ from closedform.checking.slips.making import (
 )
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed, wave_above
-from closedform.checking.written_back import written_back
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import (
     EULER,
     Apply,

@@ -6,13 +6,13 @@ from collections.abc import Iterator
 from itertools import combinations
 from typing import TypeVar
 
-from closedform.checking.judge_vectors import authors_matrix
-from closedform.checking.matrices import ExactMatrix
+from closedform.checking.judging.vectors import authors_matrix
 from closedform.checking.slips import names
 from closedform.checking.slips.making import ONE, ZERO, negated, over, times
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Trial
-from closedform.checking.written_back import written_back
+from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Array, Written
 
 __all__ = ["inverses", "rearranged", "swapped_products"]

@@ -7,12 +7,12 @@ from itertools import combinations
 
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import Value
-from closedform.checking.ground import Ground, Stretch
-from closedform.checking.judge_functions import solution_value
-from closedform.checking.matrices import ExactMatrix, column
+from closedform.checking.judging.functions import solution_value
 from closedform.checking.slips import names
 from closedform.checking.slips.trial import Candidate, Trial
+from closedform.checking.standing.ground import Ground, Stretch
+from closedform.checking.values.exact import Value
+from closedform.checking.values.matrices import ExactMatrix, column
 
 __all__ = ["Wrong", "parts", "where_equal"]
 

@@ -7,10 +7,10 @@ from fractions import Fraction
 
 from flint import arb
 
-from closedform.checking.matrices import ExactMatrix
 from closedform.checking.slips.measuring import largest, real, size
 from closedform.checking.slips.spots import Spot, Step, put
 from closedform.checking.slips.trial import EXACTLY, Effort, Point, Trial, Values
+from closedform.checking.values.matrices import ExactMatrix
 from closedform.notation.written.tree import Array, Written
 
 __all__ = ["narrowed", "wrong_entries"]

@@ -8,17 +8,17 @@ from fractions import Fraction
 from flint import acb, ctx
 
 from closedform.algebra.elementary import Element, NotElementaryError
-from closedform.checking.compare import compare
 from closedform.checking.digits import Judged
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import Value
-from closedform.checking.judge_numbers import QUANTITIES
+from closedform.checking.judging.compare import compare
+from closedform.checking.judging.numbers import QUANTITIES
 from closedform.checking.slips import names
 from closedform.checking.slips.digit_slips import digit_slip
 from closedform.checking.slips.numbers import is_bare
 from closedform.checking.slips.solving import to_places
 from closedform.checking.slips.trial import BITS, Candidate, Trial
-from closedform.checking.written_back import written_back
+from closedform.checking.values.exact import Value
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import Literal, Negation, Written, changed, walk
 

@@ -7,7 +7,7 @@ from fractions import Fraction
 
 from flint import acb, arb, ctx
 
-from closedform.checking.balls import NoValueError, enclose_written
+from closedform.checking.balls.enclosing import NoValueError, enclose_written
 from closedform.checking.slips.making import ONE, contains, exponent_of, times
 from closedform.checking.slips.solving import Place
 from closedform.checking.slips.spots import Spot, spots

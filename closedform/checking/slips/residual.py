@@ -9,13 +9,13 @@ from flint import acb, arb, ctx
 
 from closedform.algebra.elementary import NotElementaryError
 from closedform.algebra.enclosure import decimal_order, exact_decimal
-from closedform.checking.balls import NoValueError, Quantities
+from closedform.checking.balls.enclosing import NoValueError, Quantities
 from closedform.checking.digits import Difference, largest_difference
-from closedform.checking.matrices import ExactMatrix
 from closedform.checking.slips.measuring import size
 from closedform.checking.slips.trial import BITS, Trial
-from closedform.checking.spread import spread
-from closedform.checking.written_back import written_back
+from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.spread import spread
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Symbol, Written, walk
 
 __all__ = ["residual_text"]

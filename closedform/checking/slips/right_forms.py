@@ -7,11 +7,11 @@ from collections.abc import Iterator
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.ground import Ground
-from closedform.checking.judge_vectors import authors_diagonal, authors_matrix
-from closedform.checking.matrices import ExactMatrix, identity
-from closedform.checking.setting import Finding, Setting
-from closedform.checking.written_back import written_back
+from closedform.checking.judging.vectors import authors_diagonal, authors_matrix
+from closedform.checking.standing.ground import Ground
+from closedform.checking.standing.setting import Finding, Setting
+from closedform.checking.values.matrices import ExactMatrix, identity
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Written
 
 __all__ = ["right_form"]

@@ -8,8 +8,7 @@ from fractions import Fraction
 from typing import TypeGuard
 
 from closedform.checking.claim import Claim, Group
-from closedform.checking.judge import judge
-from closedform.checking.setting import Finding, Setting
+from closedform.checking.judging.judge import judge
 from closedform.checking.slips import names
 from closedform.checking.slips.digit_slips import digit_slip
 from closedform.checking.slips.making import negated, number, times
@@ -17,6 +16,7 @@ from closedform.checking.slips.numbers import is_bare
 from closedform.checking.slips.solving import Place, solved
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Point, Trial
+from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.verdict import Slip
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (

@@ -10,7 +10,7 @@ from closedform.checking.slips.making import ONE, contains, negated, times
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.slips.wording import part_text, placed
-from closedform.checking.written_back import written_back
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import (
     Apply,
     Negation,

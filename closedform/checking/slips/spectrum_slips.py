@@ -7,13 +7,13 @@ from collections.abc import Iterator
 from itertools import permutations, product
 
 from closedform.algebra.elementary import Element
-from closedform.checking.judge_vectors import authors_diagonal, authors_matrix, right_products
-from closedform.checking.matrices import ExactMatrix, diagonal, identity
+from closedform.checking.judging.vectors import authors_diagonal, authors_matrix, right_products
 from closedform.checking.slips import names
 from closedform.checking.slips.making import ONE, ZERO, negated
 from closedform.checking.slips.spots import Spot
 from closedform.checking.slips.trial import Candidate, Trial
-from closedform.checking.written_back import written_back
+from closedform.checking.values.matrices import ExactMatrix, diagonal, identity
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import (
     Array,

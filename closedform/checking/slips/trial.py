@@ -9,19 +9,19 @@ from fractions import Fraction
 from flint import acb, acb_mat, arb, ctx
 
 from closedform.algebra.elementary import NotElementaryError
-from closedform.checking.balls import NoValueError, enclose_matrix, enclose_written
+from closedform.checking.balls.enclosing import NoValueError, enclose_matrix, enclose_written
 from closedform.checking.claim import Claim
-from closedform.checking.compare import compare, has_decimals
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.exact import Value
-from closedform.checking.ground import Ground
-from closedform.checking.judge import judge
-from closedform.checking.matrices import ExactMatrix
-from closedform.checking.setting import Setting
-from closedform.checking.signs import both_signs
+from closedform.checking.judging.compare import compare, has_decimals
+from closedform.checking.judging.judge import judge
 from closedform.checking.slips.measuring import distance, largest, real, size
 from closedform.checking.slips.spots import Spot, Step, put, spots
-from closedform.checking.written_back import written_back
+from closedform.checking.standing.ground import Ground
+from closedform.checking.standing.setting import Setting
+from closedform.checking.values.exact import Value
+from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.signs import both_signs
+from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Listing, Symbol, Written, walk
 
 __all__ = ["BITS", "EXACTLY", "SPECTRAL_SAMPLE", "Candidate", "Effort", "Point", "Trial", "Values"]

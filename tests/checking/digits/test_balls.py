@@ -9,7 +9,7 @@ from flint import acb, arb, ctx, fmpq
 from hypothesis import given
 from hypothesis import strategies as st
 
-from closedform.checking.balls import (
+from closedform.checking.balls.enclosing import (
     NoValueError,
     Quantities,
     SizeMismatchError,

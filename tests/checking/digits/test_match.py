@@ -9,7 +9,7 @@ from flint import arb, ctx
 from hypothesis import given
 from hypothesis import strategies as st
 
-from closedform.checking.balls import NoValueError, Quantities, enclose_written
+from closedform.checking.balls.enclosing import NoValueError, Quantities, enclose_written
 from closedform.checking.digits import (
     DigitsMatch,
     largest_difference,

@@ -10,7 +10,7 @@ from pathlib import Path
 
 from closedform.checking.check import check_lines
 from closedform.checking.claim import SourceLine
-from closedform.checking.source import Source
+from closedform.checking.source.reading import Source
 from closedform.checking.verdict import LineVerdict
 from closedform.model import model_from
 from tests.checking.generated.lines import Derivation, Line

@@ -6,14 +6,14 @@ from dataclasses import dataclass
 from functools import cache
 from typing import Any
 
-from closedform.checking.author import Author
 from closedform.checking.claim import Claim, SourceLine
-from closedform.checking.ground import Ground, ground_of
-from closedform.checking.judge import judge, judged, stated
-from closedform.checking.lines import read_line
-from closedform.checking.recognise import claims_of
-from closedform.checking.setting import Finding, Setting
+from closedform.checking.judging.judge import judge, judged, stated
+from closedform.checking.recognising.lines import read_line
+from closedform.checking.recognising.recognise import claims_of
 from closedform.checking.slips import diagnosed
+from closedform.checking.standing.author import Author
+from closedform.checking.standing.ground import Ground, ground_of
+from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.truths.solved import truths_of
 from closedform.checking.verdict import Slip
 from closedform.model import model_from

@@ -6,7 +6,7 @@ from dataclasses import replace
 
 import pytest
 
-from closedform.checking.judge import judge
+from closedform.checking.judging.judge import judge
 from closedform.checking.slips import names
 from closedform.checking.slips.names import MEANINGS
 from closedform.notation.written.tree import Listing

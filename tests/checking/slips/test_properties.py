@@ -8,16 +8,16 @@ from fractions import Fraction
 from hypothesis import assume, given
 from hypothesis import strategies as st
 
-from closedform.checking.author import Author
 from closedform.checking.claim import SourceLine
-from closedform.checking.facts import Facts
-from closedform.checking.judge import judge
-from closedform.checking.lines import read_line
-from closedform.checking.recognise import claims_of
-from closedform.checking.setting import Setting
+from closedform.checking.judging.judge import judge
+from closedform.checking.recognising.lines import read_line
+from closedform.checking.recognising.recognise import claims_of
 from closedform.checking.slips import diagnosed
 from closedform.checking.slips.making import negated
 from closedform.checking.slips.spots import put, spots
+from closedform.checking.standing.author import Author
+from closedform.checking.standing.facts import Facts
+from closedform.checking.standing.setting import Setting
 from closedform.notation.written.tree import Literal, Sum, Written
 from tests.checking.slips.making import Diagnosis, ground
 from tests.checking.slips.test_examples import mended_line_holds

@@ -6,7 +6,7 @@ from dataclasses import replace
 
 import pytest
 
-from closedform.checking.judge import judge
+from closedform.checking.judging.judge import judge
 from closedform.checking.slips import right_form
 from tests.checking.slips.making import Line, diagnosis
 

@@ -1,0 +1,1 @@
+"""Numbers and matrices as written, enclosed in complex balls."""

@@ -1,0 +1,1 @@
+"""Claims judged, alone and as consequences of earlier lines."""

@@ -1,0 +1,1 @@
+"""Exact values of what was written: numbers, functions of time, matrices."""
