@@ -20,6 +20,7 @@ from closedform.checking.standing.facts import Facts
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.truth import Truth
 from closedform.checking.verdict import LineVerdict, Slip, Word
+from closedform.notation.written.tidied import tidied
 from closedform.notation.written.tree import Statement, Symbol, Written, changed, walk
 
 __all__ = ["JudgedLine", "judged_lines", "verdict_on"]
@@ -160,6 +161,8 @@ def verdict_on(line: JudgedLine) -> LineVerdict:
     slip, reason = None, finding.reason
     if finding.word == "fails" and _is_small(gravest.claim):
         slip, reason = diagnosed(gravest.claim, finding, line.setting)
+        if slip is not None and slip.mended is not None:
+            slip = replace(slip, mended=tidied(slip.mended))
     elif finding.word == "carried":
         reason = f"it follows from line {gravest.carried_from}"
     return LineVerdict(
@@ -189,7 +192,7 @@ def _right(claim: Claim, finding: Finding, slip: Slip | None, setting: Setting) 
         return None
     mended = slip.mended if slip is not None else None
     right = right_form(claim, finding, setting) if mended is None else mended
-    return None if right is None else _spelled_out(right, setting)
+    return None if right is None else tidied(_spelled_out(right, setting))
 
 
 def _spelled_out(tree: Written, setting: Setting) -> Written:

@@ -52,6 +52,7 @@ __all__ = [
     "changed",
     "children",
     "walk",
+    "with_parts",
 ]
 
 FUNCTIONS = (
@@ -385,6 +386,11 @@ def changed(node: Written, change: Callable[[Written], Written | None]) -> Writt
     new = change(node)
     if new is not None:
         return new
+    return with_parts(node, lambda part: changed(part, change))
+
+
+def with_parts(node: Written, change: Callable[[Written], Written]) -> Written:
+    """Return a node with `change` of each formula that it is directly made of."""
     parts: dict[str, Any] = {}
     for slot in fields(node):
         before = getattr(node, slot.name)
@@ -402,9 +408,9 @@ def _formulas(value: object) -> Iterator[Written]:
             yield from _formulas(item)
 
 
-def _changed(value: object, change: Callable[[Written], Written | None]) -> object:
+def _changed(value: object, change: Callable[[Written], Written]) -> object:
     if isinstance(value, Written):
-        return changed(value, change)
+        return change(value)
     if isinstance(value, tuple):
         new = tuple(_changed(item, change) for item in value)
         return value if all(a is b for a, b in zip(new, value, strict=True)) else new
