@@ -10,13 +10,10 @@ from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.ansatz import fit
 from closedform.checking.judging.compare import compare
-from closedform.checking.judging.functions import (
-    CONSTANTS,
-    constants_of,
-    free_residual,
-    laplace,
-    solution_value,
-)
+from closedform.checking.judging.free_solutions import free_residual
+from closedform.checking.judging.open_constants import CONSTANTS, constants_of
+from closedform.checking.judging.transforms import laplace
+from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.standing.author import Author, Entry
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Setting

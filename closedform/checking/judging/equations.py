@@ -10,7 +10,7 @@ from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.compare import compare, has_decimals
-from closedform.checking.judging.functions import stretches_meant
+from closedform.checking.judging.true_solutions import stretches_meant
 from closedform.checking.standing.ground import Ground, Stretch
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.values.exact import Scope, Value, exact

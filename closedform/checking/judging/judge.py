@@ -11,6 +11,7 @@ from closedform.checking.balls.enclosing import NoValueError
 from closedform.checking.claim import Claim, Group
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.judging.amplitude import judge_amplitude
+from closedform.checking.judging.canonical import judge_canonical
 from closedform.checking.judging.compare import has_decimals
 from closedform.checking.judging.consequences import carried_from
 from closedform.checking.judging.constants import (
@@ -19,17 +20,14 @@ from closedform.checking.judging.constants import (
     opens,
     rests_on_constants,
 )
+from closedform.checking.judging.eigenvectors import judge_eigenvector
 from closedform.checking.judging.equations import judge_equation
-from closedform.checking.judging.functions import (
+from closedform.checking.judging.exponentials import (
     judge_block_exponential,
-    judge_homogeneous,
-    judge_particular,
     judge_resolvent,
-    judge_solution,
-    judge_steady,
-    judge_transform,
     judge_transition,
 )
+from closedform.checking.judging.free_solutions import judge_homogeneous, judge_particular
 from closedform.checking.judging.numbers import (
     QUANTITIES,
     judge_definition,
@@ -37,18 +35,16 @@ from closedform.checking.judging.numbers import (
     judge_quantity,
     judge_value,
 )
+from closedform.checking.judging.solutions import judge_solution
 from closedform.checking.judging.spectrum import (
     judge_characteristic,
     judge_eigenvalues,
     judge_matrix,
 )
+from closedform.checking.judging.steady import judge_steady
 from closedform.checking.judging.transfer import judge_transfer
-from closedform.checking.judging.vectors import (
-    judge_canonical,
-    judge_eigenvector,
-    judge_inverse,
-    judge_transformation,
-)
+from closedform.checking.judging.transformations import judge_inverse, judge_transformation
+from closedform.checking.judging.transformed import judge_transform
 from closedform.checking.recognising.angles import angles_of
 from closedform.checking.recognising.left_sides import base_and_indices
 from closedform.checking.recognising.naming import EARLIER, used_names

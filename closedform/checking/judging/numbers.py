@@ -13,8 +13,9 @@ from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.judging.compare import compare, has_decimals
 from closedform.checking.judging.constants import constant_values, is_constant_of_integration
-from closedform.checking.judging.functions import CONSTANTS, solution_value, stretches_meant
 from closedform.checking.judging.held import held_against
+from closedform.checking.judging.open_constants import CONSTANTS
+from closedform.checking.judging.true_solutions import solution_value, stretches_meant
 from closedform.checking.recognising.definitions import quantities_meant, require_definition
 from closedform.checking.recognising.left_sides import base_and_indices
 from closedform.checking.standing.ground import Ground

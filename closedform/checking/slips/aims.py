@@ -11,8 +11,8 @@ from flint import acb, arb, ctx
 from closedform.algebra.elementary import NotElementaryError
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.judging.functions import solution_value
 from closedform.checking.judging.judge import judge
+from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.slips.measuring import real, size
 from closedform.checking.slips.trial import BITS, SPECTRAL_SAMPLE, Point, Trial
 from closedform.checking.standing.ground import SPECTRAL, Ground, Stretch

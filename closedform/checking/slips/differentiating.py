@@ -6,7 +6,7 @@ from collections.abc import Callable, Iterator
 
 from closedform.algebra.elementary import Element
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.judging.functions import solution_value
+from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.slips import names
 from closedform.checking.slips.motion import Wrong, where_equal
 from closedform.checking.slips.trial import Candidate, Trial

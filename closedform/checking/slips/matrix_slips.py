@@ -6,7 +6,7 @@ from collections.abc import Iterator
 from itertools import combinations
 from typing import TypeVar
 
-from closedform.checking.judging.vectors import authors_matrix
+from closedform.checking.judging.authors_matrices import authors_matrix
 from closedform.checking.slips import names
 from closedform.checking.slips.making import ONE, ZERO, negated, over, times
 from closedform.checking.slips.spots import Spot

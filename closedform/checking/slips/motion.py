@@ -7,7 +7,7 @@ from itertools import combinations
 
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.judging.functions import solution_value
+from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.slips import names
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.standing.ground import Ground, Stretch

@@ -7,7 +7,7 @@ from collections.abc import Iterator
 from closedform.algebra.elementary import Element, NotElementaryError
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.judging.vectors import authors_diagonal, authors_matrix
+from closedform.checking.judging.authors_matrices import authors_diagonal, authors_matrix
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.values.matrices import ExactMatrix, identity

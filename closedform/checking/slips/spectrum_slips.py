@@ -7,7 +7,8 @@ from collections.abc import Iterator
 from itertools import permutations, product
 
 from closedform.algebra.elementary import Element
-from closedform.checking.judging.vectors import authors_diagonal, authors_matrix, right_products
+from closedform.checking.judging.authors_matrices import authors_diagonal, authors_matrix
+from closedform.checking.judging.canonical import right_products
 from closedform.checking.slips import names
 from closedform.checking.slips.making import ONE, ZERO, negated
 from closedform.checking.slips.spots import Spot
