@@ -4,17 +4,18 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from closedform.algebra.elementary import Element, ElementaryField
+from closedform.algebra.elementary import Element, ElementaryField, NotElementaryError
+from closedform.checking.errors import NotJudgedError
 from closedform.checking.standing.ground import Ground, ground_of
 from closedform.checking.truth import Truth
-from closedform.checking.values.exact import Scope, exact
+from closedform.checking.values.exact import exact
+from closedform.checking.values.scope import Scope
 from closedform.errors import InputError, Place
-from closedform.notation.comparison import read_comparison
+from closedform.notation.comparison import Compared, read_comparison
 from closedform.notation.errors import quoted
-from closedform.notation.expression import Expression
 from closedform.notation.written.from_expression import written_from
 
-__all__ = ["Grounds", "NoSuchCaseError", "allowed_cases"]
+__all__ = ["Grounds", "NoSuchCaseError", "UndecidedCaseError", "allowed_cases"]
 
 
 class NoSuchCaseError(InputError):
@@ -36,6 +37,20 @@ class NoSuchCaseError(InputError):
         return (
             f"{self.path}: the model has no case {quoted(self.case)}; name one by its number, or "
             f"by a condition that holds in it. It has: {listed}"
+        )
+
+
+class UndecidedCaseError(InputError):
+    """A condition on the parameters that cannot be worked out; `reason` says why."""
+
+    def __init__(self, path: Path, case: str, reason: str) -> None:
+        super().__init__(path, case, reason)
+        self.path, self.case, self.reason = path, case, reason
+
+    def __str__(self) -> str:
+        return (
+            f"{self.path}: whether {quoted(self.case)} holds cannot be worked out: {self.reason}; "
+            "write a simpler condition, or the number of the case."
         )
 
 
@@ -70,7 +85,7 @@ def allowed_cases(
     `case` is a number from 1, or a condition such as c^2 < 4*m*k: the cases stay in which it
     holds at every sample of the parameters.  Errors name the file and `key`.
 
-    Raises:  NoSuchCaseError if none does; what `read_comparison` raises.
+    Raises:  NoSuchCaseError if none does; UndecidedCaseError; what `read_comparison` raises.
     """
     text = case.strip()
     if not text:
@@ -82,11 +97,11 @@ def allowed_cases(
         return (truths[int(number) - 1],)
     names = frozenset(truths[0].parameters)
     place = Place(str(path), key)
-    left, relation, right = read_comparison(text, names=names, place=place)
+    compared = read_comparison(text, names=names, place=place)
     found = tuple(
         truth
         for truth in truths
-        if truth.samples and all(_holds(left, relation, right, s) for s in _samples(truth))
+        if truth.samples and all(_holds(compared, sample, text, path) for sample in _samples(truth))
     )
     if not found:
         raise NoSuchCaseError(path, text, tuple(truth.condition for truth in truths))
@@ -102,10 +117,15 @@ def _samples(truth: Truth) -> list[dict[str, Element]]:
     return samples
 
 
-def _holds(left: Expression, relation: str, right: Expression, sample: dict[str, Element]) -> bool:
+def _holds(compared: Compared, sample: dict[str, Element], text: str, path: Path) -> bool:
     field = next(iter(sample.values())).field
     scope = Scope(field, "t", symbols=dict(sample))
-    one, other = (exact(written_from(side), scope) for side in (left, right))
+    left, relation, right = compared
+    try:
+        one, other = (exact(written_from(side), scope) for side in (left, right))
+    except (NotJudgedError, NotElementaryError, ZeroDivisionError) as error:
+        reason = "it divides by zero" if isinstance(error, ZeroDivisionError) else str(error)
+        raise UndecidedCaseError(path, text, reason) from None
     if not (isinstance(one, Element) and isinstance(other, Element)):
         return False
     sign = (one - other).sign()

@@ -13,8 +13,9 @@ from scipy.optimize import linprog
 from closedform.algebra.elementary import Element, ElementaryField
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.rounded_vectors import rounded_direction
-from closedform.checking.values.exact import Scope, exact
+from closedform.checking.values.exact import exact
 from closedform.checking.values.matrices import ExactMatrix, column
+from closedform.checking.values.scope import Scope
 from closedform.notation.written.tree import (
     Constant,
     Declared,

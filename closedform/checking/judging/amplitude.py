@@ -10,7 +10,7 @@ from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.held import held_against
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 
 __all__ = ["judge_amplitude"]

@@ -7,8 +7,8 @@ from dataclasses import dataclass
 
 from closedform.algebra.elementary import Element
 from closedform.checking.standing.ground import SPECTRAL, Ground
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Value
 
 __all__ = ["Fit", "fit", "rank_of"]
 

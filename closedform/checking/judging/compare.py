@@ -13,8 +13,9 @@ from closedform.checking.balls.enclosing import NoValueError, Quantities
 from closedform.checking.digits import DigitsMatch, largest_difference, match_digits, told
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.standing.ground import SPECTRAL, Ground
-from closedform.checking.values.exact import Scope, Value, exact
+from closedform.checking.values.exact import exact
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Scope, Value
 from closedform.checking.values.spread import spread
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Array, Literal, Symbol, Written, walk

@@ -17,8 +17,9 @@ from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.standing.author import Author, Entry
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Setting
-from closedform.checking.values.exact import Value, exact
+from closedform.checking.values.exact import exact
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Written
 

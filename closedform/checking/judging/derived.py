@@ -10,10 +10,10 @@ from closedform.checking.errors import NotJudgedError
 from closedform.checking.standing.author import Entry
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Setting
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import (
     ExactMatrix,
 )
+from closedform.checking.values.scope import Value
 
 __all__ = ["OUTSIDE", "Derived", "stated_matrices", "stated_values", "value_of_entry"]
 

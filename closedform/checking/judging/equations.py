@@ -11,10 +11,12 @@ from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.compare import compare, has_decimals
 from closedform.checking.judging.true_solutions import stretches_meant
-from closedform.checking.standing.ground import Ground, Stretch
+from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Scope, Value, exact
+from closedform.checking.standing.stretch import Stretch
+from closedform.checking.values.exact import exact
 from closedform.checking.values.matrices import ExactMatrix, column
+from closedform.checking.values.scope import Scope, Value
 from closedform.checking.values.written_back import written_back
 from closedform.checking.verdict import Word
 from closedform.notation.written.tree import Jet, Negation, Sum, Symbol, Written, changed, walk

@@ -16,12 +16,12 @@ from closedform.checking.judging.open_constants import TRANSFORM_NAMES, constant
 from closedform.checking.judging.similar import is_block_form, is_similar
 from closedform.checking.standing.ground import SPECTRAL, Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value
 from closedform.checking.values.exponential import matrix_exponential
 from closedform.checking.values.matrices import (
     ExactMatrix,
     identity,
 )
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import (
     Array,

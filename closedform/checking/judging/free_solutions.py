@@ -15,14 +15,16 @@ from closedform.checking.judging.compare import has_decimals
 from closedform.checking.judging.held import held_against
 from closedform.checking.judging.open_constants import ansatz_note, constants_of, minus
 from closedform.checking.judging.true_solutions import solution_value, stretches_meant
-from closedform.checking.standing.ground import Ground, Stretch
+from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value, exact
+from closedform.checking.standing.stretch import Stretch
+from closedform.checking.values.exact import exact
 from closedform.checking.values.matrices import (
     ExactMatrix,
     characteristic_coefficients,
     identity,
 )
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import (
     Literal,

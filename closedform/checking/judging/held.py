@@ -14,8 +14,8 @@ from closedform.checking.judging.compare import Comparison, compare
 from closedform.checking.judging.transforms import laplace
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Value
 from closedform.notation.written.tree import (
     Apply,
     Jet,

@@ -3,16 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from fractions import Fraction
 
 from closedform.algebra.elementary import NotElementaryError
 from closedform.checking.balls.enclosing import NoValueError
-from closedform.checking.claim import Claim, Group
+from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError, UnknownNameError
 from closedform.checking.judging.amplitude import judge_amplitude
 from closedform.checking.judging.canonical import judge_canonical
-from closedform.checking.judging.compare import has_decimals
 from closedform.checking.judging.consequences import carried_from
 from closedform.checking.judging.constants import (
     constants_put_in,
@@ -28,6 +27,7 @@ from closedform.checking.judging.exponentials import (
     judge_transition,
 )
 from closedform.checking.judging.free_solutions import judge_homogeneous, judge_particular
+from closedform.checking.judging.judgement import Judgement, named_by, wrong_names
 from closedform.checking.judging.numbers import (
     QUANTITIES,
     judge_definition,
@@ -45,27 +45,21 @@ from closedform.checking.judging.steady import judge_steady
 from closedform.checking.judging.transfer import judge_transfer
 from closedform.checking.judging.transformations import judge_inverse, judge_transformation
 from closedform.checking.judging.transformed import judge_transform
-from closedform.checking.recognising.angles import angles_of
-from closedform.checking.recognising.left_sides import base_and_indices
 from closedform.checking.recognising.naming import EARLIER, used_names
 from closedform.checking.recognising.order import is_order, judge_order
-from closedform.checking.standing.author import Author, Entry
+from closedform.checking.standing.author import Author
 from closedform.checking.standing.cuts import with_cuts
 from closedform.checking.standing.instants import at_instants
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.standing.units import in_base_units, in_model_units
-from closedform.checking.values.signs import both_signs
 from closedform.notation.written.tree import (
-    Jet,
     Literal,
-    Negation,
     Symbol,
-    Transform,
     Written,
     walk,
 )
 
-__all__ = ["Judgement", "judge", "judged", "stated"]
+__all__ = ["judge", "judged"]
 
 Judge = Callable[[Claim, Setting], Finding]
 JUDGES: Mapping[str, Judge] = {
@@ -98,15 +92,6 @@ JUDGES: Mapping[str, Judge] = {
 }
 """What judges each kind of claim; kinds that are not here are judged as identities."""
 OUTSIDE = (NotJudgedError, NotElementaryError, NoValueError, ZeroDivisionError)
-
-
-@dataclass(frozen=True, slots=True)
-class Judgement:
-    """The finding on a claim; `carried_from` is the wrong line on which a carried one rests."""
-
-    claim: Claim
-    finding: Finding
-    carried_from: int | None = None
 
 
 def judge(claim: Claim, setting: Setting) -> Finding:
@@ -160,7 +145,7 @@ def _with_later(setting: Setting) -> Author:
     author, names = setting.author, dict[str, Written]()
     for claim in setting.later:
         if claim.says == "definition" or claim.says in QUANTITIES:
-            names = {**dict(_named(claim, author)), **names}
+            names = {**dict(named_by(claim, author)), **names}
     return replace(author, definitions={**names, **author.definitions})
 
 
@@ -221,7 +206,7 @@ def _ends_right(claim: Claim, setting: Setting) -> bool:
 
 def _with_right_names(claim: Claim, setting: Setting) -> Finding | None:
     """Return the finding on a claim that holds with the right values of names given wrongly."""
-    wrong = _wrong_names(claim, setting.author)
+    wrong = wrong_names(claim, setting.author)
     if not wrong:
         return None
     found = judge(claim, replace(setting, author=setting.author.mended(wrong)))
@@ -232,7 +217,7 @@ def _with_right_names(claim: Claim, setting: Setting) -> Finding | None:
 def _resting(claim: Claim, finding: Finding, setting: Setting) -> Judgement:
     """Return the judgement of what holds, carried if it does so by names that are wrong only."""
     author = setting.author
-    wrong = _wrong_names(claim, author)
+    wrong = wrong_names(claim, author)
     if not wrong:
         return Judgement(claim, finding)
     right = judge(claim, replace(setting, author=author.mended(wrong)))
@@ -240,12 +225,6 @@ def _resting(claim: Claim, finding: Finding, setting: Setting) -> Judgement:
         return Judgement(claim, finding)
     root = min(author.definition_roots[name] for name in wrong)
     return Judgement(claim, replace(right, word="carried"), root)
-
-
-def _wrong_names(claim: Claim, author: Author) -> list[str]:
-    """Return the names in the values of a claim that wrong lines gave, and have a right value."""
-    used = {n.name for value in claim.values for n in walk(value) if isinstance(n, Symbol)}
-    return sorted(used & author.definition_roots.keys() & author.right_values.keys())
 
 
 def _hangs_on_an_angle(claim: Claim, setting: Setting) -> bool:
@@ -260,74 +239,9 @@ def _hangs_on_an_angle(claim: Claim, setting: Setting) -> bool:
 def _by_mended_names(claim: Claim, setting: Setting) -> int | None:
     """Return the root of a wrong definition with whose right value the claim would hold."""
     author = setting.author
-    mended = _wrong_names(claim, author)
+    mended = wrong_names(claim, author)
     if not mended:
         return None
     if not judge(claim, replace(setting, author=author.mended(mended))).passes:
         return None
     return min(author.definition_roots[name] for name in mended)
-
-
-def stated(author: Author, judgement: Judgement) -> Author:
-    """Return the author after a claim, with the names that it gives to things."""
-    claim, finding = judgement.claim, judgement.finding
-    values = tuple(author.put_in(group.values[-1]) for group in claim.groups if group.values)
-    root = judgement.carried_from
-    right: dict[str, Written] = {}
-    wrong = _wrong_names(claim, author) if claim.says == "definition" else []
-    if finding.word == "fails":
-        root = claim.line.number
-    elif root is None and wrong:
-        root = min(author.definition_roots[name] for name in wrong)
-        right = dict(_named(claim, author.mended(wrong)))
-    entry = Entry(replace(claim, groups=_opened(claim, author)), values, root)
-    names = dict(_named(claim, author))
-    angles = {name: a for group in claim.groups for name, a in angles_of(group, author).items()}
-    names |= {name: principal for name, (principal, _) in angles.items()}
-    author = replace(
-        author,
-        alternatives={**author.alternatives, **{n: other for n, (_, other) in angles.items()}},
-    )
-    if finding.right is not None and len(names) == 1:
-        right = dict.fromkeys(names, finding.right)
-    return author.after(entry, names, right)
-
-
-def _opened(claim: Claim, author: Author) -> tuple[Group, ...]:
-    return tuple(
-        replace(group, values=tuple(author.put_in(v) for v in group.values))
-        for group in claim.groups
-    )
-
-
-def _named(claim: Claim, author: Author) -> list[tuple[str, Written]]:
-    """Return what the names on the left of a claim stand for from now on.
-
-    The first member without decimals is taken, else the first formula, else the last;
-    lambda_{1,2} with plus-or-minus names two numbers.
-    """
-    found: list[tuple[str, Written]] = []
-    for group in claim.groups:
-        if not group.values:
-            continue
-        closed = [v for v in group.values if not any(isinstance(n, Transform) for n in walk(v))]
-        closed = closed or [group.values[-1]]
-        formulas = [v for v in closed if not isinstance(v, Literal | Negation)]
-        value = next((v for v in closed if not has_decimals(v)), (formulas or closed[-1:])[0])
-        opened = author.put_in(value)
-        several = both_signs(opened)
-        for name in group.names:
-            if isinstance(name, Jet) and not name.order and name.at in (None, Symbol(author.time)):
-                found.append((name.name, opened))
-            if not isinstance(name, Symbol):
-                continue
-            base, index = base_and_indices(name.name)
-            indices = index.split("_")
-            if len(several) == 2:
-                own = indices if len(indices) == 2 else ["1", "2"]
-                found += [(f"{base}_{i}", v) for i, v in zip(own, several, strict=True)]
-            else:
-                found.append((name.name, opened))
-                if claim.says == "eigenvalues" and len(indices) > 1:
-                    found += [(f"{base}_{i}", opened) for i in indices]
-    return found

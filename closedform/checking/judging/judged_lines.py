@@ -8,7 +8,8 @@ from dataclasses import dataclass, replace
 
 from closedform.checking.cases import Grounds
 from closedform.checking.claim import Claim, SourceLine
-from closedform.checking.judging.judge import Judgement, judged, stated
+from closedform.checking.judging.judge import judged
+from closedform.checking.judging.judgement import Judgement, stated
 from closedform.checking.recognising.conditions import grounds_meant, is_in_pieces
 from closedform.checking.recognising.lines import ReadLine, read_line
 from closedform.checking.recognising.meant import as_meant

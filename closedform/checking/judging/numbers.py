@@ -20,8 +20,9 @@ from closedform.checking.recognising.definitions import quantities_meant, requir
 from closedform.checking.recognising.left_sides import base_and_indices
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value, exact
+from closedform.checking.values.exact import exact
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Jet, Literal, Negation, Symbol, Written, walk
 

@@ -17,8 +17,9 @@ from closedform.checking.recognising.left_sides import base_and_indices
 from closedform.checking.standing.author import Entry
 from closedform.checking.standing.ground import SPECTRAL, Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Scope, exact
+from closedform.checking.values.exact import exact
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Scope
 from closedform.checking.values.signs import both_signs
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Jet, Listing, Symbol, Written, walk

@@ -10,8 +10,8 @@ from closedform.checking.judging.transforms import laplace_in_pieces
 from closedform.checking.recognising.left_sides import left_of
 from closedform.checking.standing.ground import SPECTRAL, Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import ExactMatrix, column, identity
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Symbol, Written, walk
 

@@ -15,7 +15,7 @@ from closedform.checking.judging.transforms import laplace_in_pieces
 from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import (
     Symbol,

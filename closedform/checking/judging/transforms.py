@@ -8,8 +8,8 @@ from fractions import Fraction
 from closedform.algebra.elementary import Element
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.standing.ground import SPECTRAL, Ground
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import ExactMatrix, column
+from closedform.checking.values.scope import Value
 
 __all__ = ["laplace", "laplace_in_pieces"]
 

@@ -11,9 +11,11 @@ from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.held import held_against
-from closedform.checking.standing.ground import Ground, Stretch
+from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value, applies
+from closedform.checking.standing.stretch import Stretch
+from closedform.checking.values.exact import applies
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import (
     Range,

@@ -9,8 +9,8 @@ from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.similar import is_block_form
 from closedform.checking.standing.setting import Setting
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Value
 
 __all__ = ["as_meant"]
 

@@ -12,8 +12,9 @@ from closedform.checking.judging.compare import compare
 from closedform.checking.standing.facts import Facts
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Scope, exact
+from closedform.checking.values.exact import exact
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Scope
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import Jet, Range, Statement, Symbol, Written, walk
 

@@ -15,10 +15,12 @@ from closedform.checking.judging.judge import judge
 from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.slips.measuring import real, size
 from closedform.checking.slips.trial import BITS, SPECTRAL_SAMPLE, Point, Trial
-from closedform.checking.standing.ground import SPECTRAL, Ground, Stretch
+from closedform.checking.standing.ground import SPECTRAL, Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.exact import Value, applies
+from closedform.checking.standing.stretch import Stretch
+from closedform.checking.values.exact import applies
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Value
 from closedform.notation.written.tree import Jet, Symbol, Written, walk
 
 __all__ = ["aimed", "opened_stretches", "true_value"]

@@ -10,9 +10,9 @@ from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.slips import names
 from closedform.checking.slips.motion import Wrong, where_equal
 from closedform.checking.slips.trial import Candidate, Trial
-from closedform.checking.standing.ground import Stretch
-from closedform.checking.values.exact import Value
+from closedform.checking.standing.stretch import Stretch
 from closedform.checking.values.matrices import characteristic_coefficients
+from closedform.checking.values.scope import Value
 
 __all__ = ["derivatives", "forced_signs"]
 

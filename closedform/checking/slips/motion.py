@@ -10,9 +10,10 @@ from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.slips import names
 from closedform.checking.slips.trial import Candidate, Trial
-from closedform.checking.standing.ground import Ground, Stretch
-from closedform.checking.values.exact import Value
+from closedform.checking.standing.ground import Ground
+from closedform.checking.standing.stretch import Stretch
 from closedform.checking.values.matrices import ExactMatrix, column
+from closedform.checking.values.scope import Value
 
 __all__ = ["Wrong", "parts", "where_equal"]
 

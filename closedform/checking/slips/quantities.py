@@ -17,7 +17,7 @@ from closedform.checking.slips.digit_slips import digit_slip
 from closedform.checking.slips.numbers import is_bare
 from closedform.checking.slips.solving import to_places
 from closedform.checking.slips.trial import BITS, Candidate, Trial
-from closedform.checking.values.exact import Value
+from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
 from closedform.notation.written.tree import Literal, Negation, Written, changed, walk

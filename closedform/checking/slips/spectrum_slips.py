@@ -24,6 +24,8 @@ from closedform.notation.written.tree import (
 __all__ = ["canonical", "conjugates", "eigenvectors", "transformations"]
 
 MOST_ORDERS = 24
+LARGEST = 12
+"""States of a model in whose vectors an entry is solved for."""
 Rows = tuple[tuple[Written, ...], ...]
 
 
@@ -116,6 +118,8 @@ def eigenvectors(trial: Trial) -> Iterator[Candidate]:
     """Yield a vector with one entry solved for; the right one for a vector of something else."""
     if trial.claim.says != "eigenvector" or trial.claim.subject == "vector":
         return
+    if trial.ground.size > LARGEST:
+        return
     own = trial.own()
     if not isinstance(own, ExactMatrix):
         return
@@ -139,7 +143,7 @@ def eigenvectors(trial: Trial) -> Iterator[Candidate]:
 
 def transformations(trial: Trial) -> Iterator[Candidate]:
     """Yield P with one entry solved for from A P = P J."""
-    if trial.claim.says != "P":
+    if trial.claim.says != "P" or trial.ground.size > LARGEST:
         return
     own, ground = trial.own(), trial.ground
     if not isinstance(own, ExactMatrix) or own.shape != (ground.size, ground.size):

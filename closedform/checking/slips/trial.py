@@ -18,8 +18,8 @@ from closedform.checking.slips.measuring import distance, largest, real, size
 from closedform.checking.slips.spots import Spot, Step, put, spots
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Setting
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Value
 from closedform.checking.values.signs import both_signs
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Listing, Symbol, Written, walk

@@ -8,8 +8,8 @@ from __future__ import annotations
 
 from closedform.algebra.elementary import Element
 from closedform.checking.standing.ground import Ground
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import ExactMatrix, diagonal, identity
+from closedform.checking.values.scope import Value
 
 __all__ = ["customary"]
 

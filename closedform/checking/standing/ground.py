@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, replace
 from fractions import Fraction
 from functools import cached_property
-from itertools import count, pairwise
+from itertools import pairwise
 
 from flint import acb, arb
 
@@ -14,9 +14,12 @@ from closedform.algebra.elementary import Element, ElementaryField
 from closedform.checking.balls.enclosing import Quantities
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.standing.facts import Facts, facts_of
+from closedform.checking.standing.points import points_of, sign_of
+from closedform.checking.standing.stretch import Stretch, stretches_between
 from closedform.checking.truth import Piece, Truth
 from closedform.checking.truths.put_in import substituted
-from closedform.checking.values.exact import Scope, Value, exact
+from closedform.checking.values.blocks import jordan_matrix
+from closedform.checking.values.exact import exact
 from closedform.checking.values.exponential import matrix_exponential
 from closedform.checking.values.matrices import (
     ExactMatrix,
@@ -24,26 +27,14 @@ from closedform.checking.values.matrices import (
     column,
     identity,
 )
+from closedform.checking.values.scope import Scope, Value
 from closedform.notation.written.tree import Array, Declared, Written
 from closedform.notation.written.typed_reader import read_typed
 
-__all__ = ["SPECTRAL", "Ground", "Stretch", "ground_of"]
+__all__ = ["SPECTRAL", "Ground", "ground_of"]
 
 SPECTRAL = "spectral variable"
 """The name of the variable of polynomials: no name of a model has a space in it."""
-
-
-@dataclass(frozen=True)
-class Stretch:
-    """An interval of time, with an instant inside it; `end` is None for ever.
-
-    `index` is its place on the time axis, the same on every ground of a model.
-    """
-
-    index: int
-    start: Element
-    end: Element | None
-    inside: Element
 
 
 @dataclass(frozen=True)
@@ -122,17 +113,7 @@ class Ground:
             ends.append(None if end is None else self.number(end))
         if not found:
             starts, ends = [self.number(self.truth.start)], [None]
-        for cut in map(self.number, self.cuts):
-            for k, (one, other) in enumerate(zip(starts, ends, strict=True)):
-                if (cut - one).sign() == 1 and (other is None or (other - cut).sign() == 1):
-                    starts[k : k + 1], ends[k : k + 1] = [one, cut], [cut, other]
-                    break
-        two = self.field.one + self.field.one
-        insides = [
-            start + self.field.one if end is None else (start + end) / two
-            for start, end in zip(starts, ends, strict=True)
-        ]
-        return tuple(map(Stretch, count(), starts, ends, insides))
+        return stretches_between(starts, ends, list(map(self.number, self.cuts)), self.field)
 
     @cached_property
     def exponential(self) -> ExactMatrix:
@@ -151,16 +132,7 @@ class Ground:
             longer = [one - other for one, other in pairwise(ranks)]
             for length in range(root.algebraic, 0, -1):
                 blocks += [(value, length)] * (longer[length - 1] - longer[length])
-        zero, one = self.field.zero, self.field.one
-        rows = [[zero] * self.size for _ in range(self.size)]
-        at = 0
-        for value, length in blocks:
-            for k in range(at, at + length):
-                rows[k][k] = value
-                if k + 1 < at + length:
-                    rows[k][k + 1] = one
-            at += length
-        return ExactMatrix(self.field, tuple(map(tuple, rows)))
+        return jordan_matrix(self.field, blocks)
 
     def sampled(self) -> dict[str, arb]:
         """Return balls for the names of the field at one admissible choice of the parameters."""
@@ -177,10 +149,7 @@ class Ground:
 
     def number(self, tree: Written) -> Element:
         """Return the exact value of a formula of the truth, a number or a function."""
-        value = exact(tree, self.scope)
-        if isinstance(value, ExactMatrix):
-            raise NotJudgedError("a matrix stands where a number is wanted")
-        return value
+        return exact_number(tree, self.scope)
 
     def function(self, name: str, stretch: Stretch) -> Element | None:
         """Return a solution of the model on an interval, None if nothing has this name."""
@@ -285,7 +254,7 @@ def ground_of(truth: Truth) -> Ground:
     """Return the ground of one case of a model."""
     opened = tuple(name for name, formula in truth.quantities if formula is None)
     names = (*truth.parameters, *opened)
-    field = ElementaryField(names, _sign(truth), () if opened else _points(truth))
+    field = ElementaryField(names, sign_of(truth), () if opened else points_of(truth))
     scope = Scope(
         field, truth.time, {name: field.name(name) for name in names}, size=len(truth.states)
     )
@@ -295,35 +264,6 @@ def ground_of(truth: Truth) -> Ground:
         if formula is not None:
             scope = scope.with_symbols({name: exact(formula, scope)})
     return Ground(truth, facts_of(truth), field, scope)
-
-
-def _sign(truth: Truth) -> Callable[[Mapping[tuple[int, ...], Fraction]], int | None]:
-    """Return the truth's signs, for polynomials in which names without formula may stand."""
-    count = len(truth.parameters)
-
-    def sign(polynomial: Mapping[tuple[int, ...], Fraction]) -> int | None:
-        if any(any(exponents[count:]) for exponents in polynomial):
-            return None
-        return truth.sign({exponents[:count]: c for exponents, c in polynomial.items()})
-
-    return sign
-
-
-def _points(truth: Truth) -> list[dict[str, Fraction]]:
-    """Return the samples of the parameters that are rational numbers."""
-    points = []
-    for sample in truth.samples:
-        numbers = {name: rational(tree) for name, tree in sample.items()}
-        known = {name: value for name, value in numbers.items() if value is not None}
-        if len(known) == len(sample):
-            points.append(known)
-    return points
-
-
-def rational(tree: Written) -> Fraction | None:
-    """Return the rational number that a formula without names is, None if it is none."""
-    value = exact(tree, Scope(ElementaryField(), "t"))
-    return value.as_fraction() if isinstance(value, Element) else None
 
 
 def _put(ground: Ground, known: Mapping[str, Written]) -> Ground:

@@ -5,9 +5,10 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 
 from closedform.algebra.elementary import Element
-from closedform.checking.standing.ground import Ground, Stretch
-from closedform.checking.values.exact import Value
+from closedform.checking.standing.ground import Ground
+from closedform.checking.standing.stretch import Stretch
 from closedform.checking.values.matrices import column
+from closedform.checking.values.scope import Value
 
 __all__ = ["MotionOn"]
 

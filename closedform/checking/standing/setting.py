@@ -11,8 +11,9 @@ from closedform.checking.standing.author import Author
 from closedform.checking.standing.customary import customary
 from closedform.checking.standing.ground import SPECTRAL, Ground
 from closedform.checking.standing.motion import MotionOn
-from closedform.checking.values.exact import Scope, Value, exact
+from closedform.checking.values.exact import exact
 from closedform.checking.values.exponential import matrix_exponential
+from closedform.checking.values.scope import Scope, Value
 from closedform.checking.verdict import Word
 from closedform.notation.written.tree import Symbol, Written, changed, walk
 

@@ -7,10 +7,9 @@ from collections.abc import Sequence
 from closedform.algebra.elementary import Element, ElementaryField
 from closedform.checking.errors import NotJudgedError, SizeError
 from closedform.checking.values.matrices import ExactMatrix, diagonal
+from closedform.checking.values.scope import Value
 
-__all__ = ["block_diagonal", "block_matrix"]
-
-Value = Element | ExactMatrix
+__all__ = ["block_diagonal", "block_matrix", "jordan_matrix"]
 
 
 def block_diagonal(values: Sequence[Value], field: ElementaryField) -> ExactMatrix:
@@ -41,6 +40,21 @@ def block_matrix(rows: Sequence[Sequence[Value]], field: ElementaryField) -> Exa
         blocks = [_block(e, height, width, field) for e, width in zip(row, widths, strict=True)]
         whole += [tuple(e for block in blocks for e in block.rows[i]) for i in range(height)]
     return ExactMatrix(field, tuple(whole))
+
+
+def jordan_matrix(field: ElementaryField, blocks: Sequence[tuple[Element, int]]) -> ExactMatrix:
+    """Return the matrix with a Jordan block for each eigenvalue and length, ones above these."""
+    size = sum(length for _, length in blocks)
+    zero, one = field.zero, field.one
+    rows = [[zero] * size for _ in range(size)]
+    at = 0
+    for value, length in blocks:
+        for k in range(at, at + length):
+            rows[k][k] = value
+            if k + 1 < at + length:
+                rows[k][k + 1] = one
+        at += length
+    return ExactMatrix(field, tuple(map(tuple, rows)))
 
 
 def _extent(value: Value, axis: int) -> int:

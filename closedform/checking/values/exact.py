@@ -2,15 +2,22 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
-from dataclasses import dataclass, replace
-from dataclasses import field as dataclass_field
-from fractions import Fraction
+from dataclasses import replace
 
-from closedform.algebra.elementary import Element, ElementaryField, NotElementaryError
+from closedform.algebra.elementary import Element
 from closedform.checking.errors import NotJudgedError, UnknownNameError
-from closedform.checking.values.blocks import block_diagonal, block_matrix
+from closedform.checking.values.arithmetic import (
+    added,
+    difference_of,
+    entrywise,
+    limit_of,
+    product_of,
+    quotient_of,
+)
+from closedform.checking.values.blocks import block_matrix
 from closedform.checking.values.matrices import ExactMatrix, identity
+from closedform.checking.values.named_functions import applied, exponential_of
+from closedform.checking.values.scope import HELD, Scope, Value
 from closedform.notation.written.tree import (
     EULER,
     INFINITY,
@@ -38,39 +45,7 @@ from closedform.notation.written.tree import (
     walk,
 )
 
-__all__ = ["HELD", "Scope", "Value", "applies", "exact"]
-
-Value = Element | ExactMatrix
-HELD = "held time"
-"""The name of the time where an integral over another variable holds it."""
-NUMERIC = frozenset({"exp", "ln", "sin", "cos", "tan", "sinh", "cosh", "tanh", "atan", "asin"})
-NUMERIC |= {"acos", "sqrt", "abs", "re", "im", "conj", "arg", "asinh", "acosh", "atanh"}
-
-
-@dataclass(frozen=True)
-class Scope:
-    """What names mean where a formula is evaluated.
-
-    `symbols` are numbers and matrices, `jets` functions of time by (name, order).  Where steps
-    and pieces occur, the value is that on the interval in which `instant` lies, which may be
-    compared with constants by `below`.  `exponential` gives e^(Mt) for a constant matrix M.
-    """
-
-    field: ElementaryField
-    time: str
-    symbols: Mapping[str, Value] = dataclass_field(default_factory=dict)
-    jets: Mapping[tuple[str, int], Value] = dataclass_field(default_factory=dict)
-    instant: Element | None = None
-    exponential: Callable[[ExactMatrix], ExactMatrix] | None = None
-    size: int | None = None
-    moment: Callable[[str, int, Element | None], Value | None] | None = None
-    """Value of a function of time at an instant, on whichever interval; None is infinity."""
-    in_pieces: bool = False
-    """Whether the functions have other formulas on other intervals."""
-
-    def with_symbols(self, more: Mapping[str, Value]) -> Scope:
-        """Return the scope with further names, which win over its own."""
-        return replace(self, symbols={**self.symbols, **more})
+__all__ = ["applies", "exact"]
 
 
 def exact(node: Written, scope: Scope) -> Value:
@@ -90,13 +65,13 @@ def exact(node: Written, scope: Scope) -> Value:
         case Sum(terms):
             return _sum(terms, scope)
         case Product(factors):
-            return _product([exact(factor, scope) for factor in factors])
+            return product_of([exact(factor, scope) for factor in factors])
         case Quotient(above, below):
-            return _quotient(exact(above, scope), exact(below, scope))
+            return quotient_of(exact(above, scope), exact(below, scope))
         case Power():
             return _power(node, scope)
-        case Apply():
-            return _apply(node, scope)
+        case Apply(function, arguments):
+            return applied(function, [exact(argument, scope) for argument in arguments], scope)
     return _other(node, scope)
 
 
@@ -125,15 +100,15 @@ def _rarer(node: Written, scope: Scope) -> Value:
         case Evaluated(body, variable, at, lower):
             upper = _put(body, variable, at, scope)
             return (
-                upper if lower is None else _difference(upper, _put(body, variable, lower, scope))
+                upper if lower is None else difference_of(upper, _put(body, variable, lower, scope))
             )
         case Derivative(body, variable, order) if variable == scope.time:
             value = exact(body, scope)
             for _ in range(order):
-                value = _entrywise(value, Element.derivative)
+                value = entrywise(value, Element.derivative)
             return value
         case Limit(body, variable, Constant("oo")) if variable == scope.time:
-            return _entrywise(exact(body, scope), _limit)
+            return entrywise(exact(body, scope), limit_of)
         case Integral(body, variable, lower, upper) if lower is not None and upper is not None:
             return _integral(body, variable, lower, upper, scope)
         case PlusMinus():
@@ -169,7 +144,7 @@ def _jet(node: Jet, scope: Scope) -> Value:
             raise UnknownNameError(node.name + "'" * node.order)
         known = scope.jets[node.name, max(found)]
         for _ in range(node.order - max(found)):
-            known = _entrywise(known, Element.derivative)
+            known = entrywise(known, Element.derivative)
     if node.at is None or node.at == Symbol(scope.time):
         return known
     endless = node.at == INFINITY
@@ -181,67 +156,22 @@ def _jet(node: Jet, scope: Scope) -> Value:
         if value is not None:
             return value
     if at is None:
-        return _entrywise(known, _limit)
-    return _entrywise(known, lambda value: value.at(at))
+        return entrywise(known, limit_of)
+    return entrywise(known, lambda value: value.at(at))
 
 
 def _sum(terms: tuple[Written, ...], scope: Scope) -> Value:
     total: Value | None = None
     for term in terms:
         value = exact(term, scope)
-        total = value if total is None else _added(total, value)
+        total = value if total is None else added(total, value)
     assert total is not None  # noqa: S101  a sum has terms
     return total
 
 
-def _added(one: Value, other: Value) -> Value:
-    match one, other:
-        case Element(), Element():
-            return one + other
-        case ExactMatrix(), ExactMatrix():
-            return one + other
-        case ExactMatrix(), Element():
-            matrix, number = one, other
-        case Element(), ExactMatrix():
-            matrix, number = other, one
-    if number.is_zero:
-        return matrix
-    raise NotJudgedError("a number is added to a matrix")
-
-
-def _difference(one: Value, other: Value) -> Value:
-    return _added(one, -other)
-
-
-def _product(values: list[Value]) -> Value:
-    result = values[0]
-    for value in values[1:]:
-        match result, value:
-            case Element(), Element():
-                result = result * value
-            case Element(), ExactMatrix():
-                result = value.scaled(result)
-            case ExactMatrix(), Element():
-                result = result.scaled(value)
-            case ExactMatrix(), ExactMatrix():
-                if result.shape == (1, 1) and value.shape[0] != 1:
-                    result = value.scaled(result.rows[0][0])
-                else:
-                    result = result @ value
-    return result
-
-
-def _quotient(above: Value, below: Value) -> Value:
-    if isinstance(below, ExactMatrix):
-        raise NotJudgedError("something is divided by a matrix")
-    if isinstance(above, ExactMatrix):
-        return above.mapped(lambda entry: entry / below)
-    return above / below
-
-
 def _power(node: Power, scope: Scope) -> Value:
     if node.base == EULER:
-        return _exponential(exact(node.exponent, scope), scope)
+        return exponential_of(exact(node.exponent, scope), scope)
     base, exponent = exact(node.base, scope), exact(node.exponent, scope)
     if isinstance(exponent, ExactMatrix):
         raise NotJudgedError("a matrix stands in an exponent of something else than e")
@@ -257,84 +187,6 @@ def _power(node: Power, scope: Scope) -> Value:
     if rational is not None:
         return scope.field.root(base, rational.denominator) ** rational.numerator
     return scope.field.exp(exponent * scope.field.ln(base))
-
-
-def _exponential(exponent: Value, scope: Scope) -> Value:
-    if isinstance(exponent, Element):
-        return scope.field.exp(exponent)
-    rate = exponent.mapped(Element.derivative)
-    if scope.exponential is None or not rate.is_constant:
-        raise NotElementaryError("the exponential of this matrix is not worked out")
-    if not (exponent - rate.scaled(scope.field.t)).is_zero:
-        raise NotElementaryError("the exponential of this matrix is not worked out")
-    return scope.exponential(rate)
-
-
-def _apply(node: Apply, scope: Scope) -> Value:
-    name, values = node.function, [exact(argument, scope) for argument in node.arguments]
-    if name == "diag":
-        return block_diagonal(values, scope.field)
-    value = values[0]
-    if isinstance(value, ExactMatrix):
-        return _of_matrix(name, value, scope)
-    match name:
-        case "atan2":
-            second = values[1]
-            if isinstance(second, ExactMatrix):
-                raise NotJudgedError("atan2 is applied to a matrix")
-            return scope.field.atan2(value, second)
-        case "step":
-            return _step(value, scope)
-        case "factorial":
-            return _factorial(value, scope)
-        case "transpose":
-            return value
-        case "cot" | "sec" | "csc" | "coth":
-            over = {"cot": ("cos", "sin"), "sec": (None, "cos"), "csc": (None, "sin")}
-            above, below = over.get(name, ("cosh", "sinh"))
-            one = getattr(scope.field, above)(value) if above else scope.field.one
-            return _checked(one) / _checked(getattr(scope.field, below)(value))
-        case "inverse":
-            return scope.field.one / value
-        case _ if name in NUMERIC:
-            return _checked(getattr(scope.field, name)(value))
-    raise NotJudgedError(f"{name} has no value that can be decided exactly here")
-
-
-def _checked(value: object) -> Element:
-    if not isinstance(value, Element):
-        raise TypeError(value)
-    return value
-
-
-def _of_matrix(name: str, value: ExactMatrix, scope: Scope) -> Value:
-    match name:
-        case "det":
-            return value.determinant()
-        case "trace":
-            return value.trace()
-        case "transpose":
-            return value.transposed
-        case "inverse":
-            return value.inverse()
-        case "adj":
-            return value.inverse().scaled(value.determinant())
-        case "exp":
-            return _exponential(value, scope)
-        case "rank":
-            return scope.field.number(Fraction(value.rank()))
-        case "re" | "im" | "conj":
-            return value.mapped(lambda entry: _checked(getattr(scope.field, name)(entry)))
-    raise NotJudgedError(f"{name} of a matrix has no value here")
-
-
-def _step(argument: Element, scope: Scope) -> Element:
-    if scope.instant is None:
-        raise NotJudgedError("a unit step stands where no time goes on")
-    sign = argument.at(scope.instant).sign() if not argument.is_constant else argument.sign()
-    if sign is None:
-        raise NotJudgedError("it is not decided on which side of its instant a unit step is")
-    return scope.field.one if sign >= 0 else scope.field.zero
 
 
 def applies(range_: Range, scope: Scope) -> bool:
@@ -363,34 +215,13 @@ def applies(range_: Range, scope: Scope) -> bool:
     return True
 
 
-def _factorial(value: Element, scope: Scope) -> Element:
-    whole = value.as_fraction()
-    if whole is None or whole.denominator != 1 or not 0 <= whole <= 100:
-        raise NotJudgedError("a factorial is taken of something else than a small integer")
-    result = 1
-    for k in range(2, int(whole) + 1):
-        result *= k
-    return scope.field.number(Fraction(result))
-
-
-def _limit(value: Element) -> Element:
-    found = value.limit()
-    if found is None:
-        raise NotJudgedError("it has no limit as the time goes on, or none that is decided")
-    return found
-
-
-def _entrywise(value: Value, change: Callable[[Element], Element]) -> Value:
-    return value.mapped(change) if isinstance(value, ExactMatrix) else change(value)
-
-
 def _put(body: Written, variable: str, at: Written, scope: Scope) -> Value:
     """Return a body at a value of a variable."""
     if variable == scope.time:
         instant = exact(at, scope)
         if isinstance(instant, ExactMatrix):
             raise NotJudgedError("an instant is a number, not a matrix")
-        return _entrywise(exact(body, scope), lambda value: value.at(instant))
+        return entrywise(exact(body, scope), lambda value: value.at(instant))
     return exact(body, scope.with_symbols({variable: exact(at, scope)}))
 
 
@@ -412,7 +243,7 @@ def _integral(body: Written, variable: str, lower: Written, upper: Written, scop
     ends = []
     for end in (upper, lower):
         if end == INFINITY:
-            ends.append(_limit(antiderivative))
+            ends.append(limit_of(antiderivative))
             continue
         at = exact(end, scope)
         if isinstance(at, ExactMatrix):

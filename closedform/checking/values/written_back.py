@@ -11,8 +11,8 @@ from closedform.algebra.elementary.constant import Constant
 from closedform.algebra.elementary.tower import Tower, roots_in
 from closedform.algebra.fraction_field import Whole
 from closedform.checking.errors import NotJudgedError
-from closedform.checking.values.exact import Value
 from closedform.checking.values.matrices import ExactMatrix
+from closedform.checking.values.scope import Value
 from closedform.notation.written.tree import (
     EULER,
     IMAGINARY,

@@ -7,7 +7,8 @@ from functools import cache
 from typing import Any
 
 from closedform.checking.claim import Claim, SourceLine
-from closedform.checking.judging.judge import judge, judged, stated
+from closedform.checking.judging.judge import judge, judged
+from closedform.checking.judging.judgement import stated
 from closedform.checking.recognising.lines import read_line
 from closedform.checking.recognising.recognise import claims_of
 from closedform.checking.slips import diagnosed
