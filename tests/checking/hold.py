@@ -8,9 +8,9 @@ from pathlib import Path
 from closedform.checking.cases import Grounds, allowed_cases
 from closedform.checking.claim import SourceLine
 from closedform.checking.judging.judged_lines import judged_lines, verdict_on
-from closedform.checking.truths.solved import truths_of
 from closedform.checking.verdict import LineVerdict
 from closedform.model import DrivenModel, Model, ParametricModel, model_from
+from tests.checking.known_truths import known_truths
 
 __all__ = ["held", "held_lines", "model", "symbols"]
 
@@ -43,7 +43,7 @@ def held_lines(
     stated: Model | ParametricModel | DrivenModel, lines: Sequence[SourceLine], *, case: str = ""
 ) -> list[LineVerdict]:
     """Return the verdicts on lines in the case in which most hold."""
-    truths = truths_of(stated)
+    truths = known_truths(stated)
     path = Path("lines.tex")
     allowed = allowed_cases(truths, case, path)
     chosen = [truth for truth in allowed if truth.values is not None] or list(allowed)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 from collections.abc import Iterator, Mapping, Sequence
+from functools import cache
 from pathlib import Path
 from typing import Any
 
@@ -63,7 +64,13 @@ def verdicts(
 
 
 def as_printed(item: Mapping[str, Any]) -> tuple[LineVerdict, ...]:
-    """Return the verdicts on the lines as they are published."""
+    """Return the verdicts on the lines as they are published, judged once."""
+    return _as_printed(ITEMS.index(item))
+
+
+@cache
+def _as_printed(number: int) -> tuple[LineVerdict, ...]:
+    item = ITEMS[number]
     lines = item["lines"]
     return verdicts(item, [line["latex"] for line in lines], _says(lines))
 

@@ -54,7 +54,7 @@ class Tally:
 
 def checked(derivation: Derivation) -> tuple[LineVerdict, ...]:
     """Return the verdicts on a derivation."""
-    model = model_from(derivation.model, name=f"generated {derivation.seed}")
+    model = model_from(derivation.model, name="generated")
     lines = tuple(
         SourceLine(
             number,
