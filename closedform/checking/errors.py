@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from closedform.algebra.elementary import NotElementaryError
 from closedform.errors import InputError
 
-__all__ = ["NotJudgedError", "SizeError", "UnknownNameError"]
+__all__ = ["UNDECIDED", "NotJudgedError", "SizeError", "UnknownNameError"]
 
 
 class NotJudgedError(InputError):
@@ -41,3 +42,7 @@ class SizeError(NotJudgedError):
         if self.second is None:
             return f"{self.what} of a matrix that is {one}"
         return f"{self.what} of matrices that are {one} and {self.second[0]} by {self.second[1]}"
+
+
+UNDECIDED = (NotJudgedError, NotElementaryError, ZeroDivisionError)
+"""What is raised where the exact value of a formula cannot be worked out."""

@@ -14,6 +14,7 @@ from closedform.algebra.elementary import certainty
 from closedform.algebra.elementary.constant import LARGEST_EXPONENT, Constant
 from closedform.algebra.elementary.context import Context
 from closedform.algebra.elementary.errors import NotElementaryError
+from closedform.algebra.elementary.powers import power
 from closedform.algebra.elementary.sums import Terms
 
 __all__ = ["ClosedForm", "Number"]
@@ -106,16 +107,7 @@ class ClosedForm(ABC):
     def __pow__(self, exponent: int) -> Self:
         if abs(exponent) > LARGEST_EXPONENT:
             raise NotElementaryError(f"a power to the exponent {exponent}")
-        if exponent < 0:
-            return self.inverse() ** -exponent
-        result, base = self.of(1), self
-        while exponent:
-            if exponent & 1:
-                result = result * base
-            exponent >>= 1
-            if exponent:
-                base = base * base
-        return result
+        return power(self if exponent >= 0 else self.inverse(), abs(exponent), self.of(1))
 
     def inverse(self) -> Self:
         """Return 1/x.  Raises ZeroDivisionError for zero."""

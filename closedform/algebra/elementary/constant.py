@@ -7,6 +7,7 @@ from fractions import Fraction
 from typing import Protocol
 
 from closedform.algebra.elementary.errors import NotElementaryError
+from closedform.algebra.elementary.powers import power
 from closedform.algebra.fraction_field import Whole
 
 __all__ = ["LARGEST_EXPONENT", "Constant", "Parts"]
@@ -119,16 +120,7 @@ class Constant:
     def __pow__(self, exponent: int) -> Constant:
         if abs(exponent) > LARGEST_EXPONENT:
             raise NotElementaryError(f"a power to the exponent {exponent}")
-        if exponent < 0:
-            return self.inverse() ** -exponent
-        result, base = self.tower.one, self
-        while exponent:
-            if exponent & 1:
-                result = result * base
-            exponent >>= 1
-            if exponent:
-                base = base * base
-        return result
+        return power(self if exponent >= 0 else self.inverse(), abs(exponent), self.tower.one)
 
     @property
     def top(self) -> int:

@@ -105,10 +105,6 @@ def _better(
     return min(one, other, key=_fault)
 
 
-def _last_place(literal: Literal) -> Fraction:
-    return literal.last_place
-
-
 def _fault(found: tuple[Judged, ...]) -> tuple[int, int]:
     wrong = [j for j in found if j.verdict != "right"]
     return sum(not is_rounding(j) for j in wrong), len(wrong)

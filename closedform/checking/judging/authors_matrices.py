@@ -8,14 +8,14 @@ from closedform.checking.judging.compare import has_decimals
 from closedform.checking.judging.rounded_forms import exact_form
 from closedform.checking.judging.spectrum import roots_claimed
 from closedform.checking.standing.ground import Ground
-from closedform.checking.standing.setting import Setting
+from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.values.matrices import (
     ExactMatrix,
     diagonal,
 )
 from closedform.notation.written.tree import Written
 
-__all__ = ["authors_diagonal", "authors_matrix", "matrix_value"]
+__all__ = ["authors_diagonal", "authors_matrix", "matrix_value", "misfit_of"]
 
 
 def matrix_value(tree: Written, setting: Setting, ground: Ground) -> ExactMatrix:
@@ -27,6 +27,14 @@ def matrix_value(tree: Written, setting: Setting, ground: Ground) -> ExactMatrix
     if not isinstance(value, ExactMatrix):
         raise NotJudgedError("a number stands where a matrix is wanted")
     return value
+
+
+def misfit_of(matrix: ExactMatrix, ground: Ground) -> Finding | None:
+    """Return the finding on a matrix that has not the size of A, else None."""
+    if matrix.shape == (ground.size, ground.size):
+        return None
+    rows, columns = matrix.shape
+    return Finding("fails", f"it is {rows} by {columns}, the matrix A has {ground.size} rows")
 
 
 def authors_matrix(says: str, setting: Setting, ground: Ground) -> ExactMatrix | None:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim
 from closedform.checking.judging.by_matrices import (
@@ -97,12 +99,8 @@ def by_functions(claim: Claim, setting: Setting, ground: Ground) -> int | None:
     roots = [root for _, root in found if root is not None]
     if not roots or len(found) < 2:
         return None
-    first, scope = setting.value(found[0][0], ground), setting.scope_of(ground)
-    for member, _ in found[1:]:
-        opened = setting.opened(member)
-        if not compare(opened, first, scope, ground, approximate=claim.approximate).passes:
-            return None
-    return min(roots)
+    members = [member for member, _ in found]
+    return min(roots) if _agree(members, claim, setting, ground) else None
 
 
 def by_definitions(claim: Claim, setting: Setting, ground: Ground) -> int | None:
@@ -112,10 +110,13 @@ def by_definitions(claim: Claim, setting: Setting, ground: Ground) -> int | None
     found = [roots[name] for name in sorted(used & set(roots))]
     if not found or len(claim.values) < 2:
         return None
-    first = setting.value(claim.values[0], ground)
-    scope = setting.scope_of(ground)
-    for member in claim.values[1:]:
-        opened = setting.opened(member)
-        if not compare(opened, first, scope, ground, approximate=claim.approximate).passes:
-            return None
-    return min(found)
+    return min(found) if _agree(claim.values, claim, setting, ground) else None
+
+
+def _agree(members: Sequence[Written], claim: Claim, setting: Setting, ground: Ground) -> bool:
+    """Whether all members of a claim are equal to its first one."""
+    first, scope = setting.value(members[0], ground), setting.scope_of(ground)
+    return all(
+        compare(setting.opened(m), first, scope, ground, approximate=claim.approximate).passes
+        for m in members[1:]
+    )

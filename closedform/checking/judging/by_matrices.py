@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from closedform.algebra.elementary import Element
+from closedform.checking.errors import UNDECIDED
 from closedform.checking.judging.derived import (
-    OUTSIDE,
     Derived,
     stated_matrices,
     stated_values,
@@ -147,7 +147,7 @@ def as_far_as_known(found: Iterator[Derived]) -> Iterator[Derived]:
     while True:
         try:
             yield next(found)
-        except (StopIteration, *OUTSIDE):
+        except (StopIteration, *UNDECIDED):
             return
 
 

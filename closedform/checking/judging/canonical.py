@@ -5,7 +5,7 @@ from __future__ import annotations
 from closedform.algebra.elementary import NotElementaryError
 from closedform.checking.claim import Claim
 from closedform.checking.errors import NotJudgedError, UnknownNameError
-from closedform.checking.judging.authors_matrices import authors_diagonal, matrix_value
+from closedform.checking.judging.authors_matrices import authors_diagonal, matrix_value, misfit_of
 from closedform.checking.judging.compare import has_decimals
 from closedform.checking.judging.held import held_against
 from closedform.checking.judging.rounded_forms import exact_form
@@ -42,11 +42,9 @@ def judge_canonical(claim: Claim, setting: Setting) -> Finding:
         opened = setting.opened(member)
         ground = setting.ground_for(opened)
         matrix = matrix_value(member, setting, ground)
-        if matrix.shape != (ground.size, ground.size):
-            rows, columns = matrix.shape
-            return Finding(
-                "fails", f"it is {rows} by {columns}, the matrix A has {ground.size} rows"
-            )
+        misfit = misfit_of(matrix, ground)
+        if misfit is not None:
+            return misfit
         if has_decimals(opened) and exact_form(matrix, ground) is not None:
             last = _rounded_form(claim, member, setting)
             if not last.passes:

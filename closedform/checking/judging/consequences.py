@@ -6,6 +6,7 @@ from collections.abc import Callable, Iterator
 
 from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim
+from closedform.checking.errors import UNDECIDED
 from closedform.checking.judging.by_definitions import (
     by_definitions,
     by_functions,
@@ -22,7 +23,7 @@ from closedform.checking.judging.by_matrices import (
 )
 from closedform.checking.judging.by_solutions import solutions, steady_values, values_at
 from closedform.checking.judging.compare import compare
-from closedform.checking.judging.derived import OUTSIDE, Derived
+from closedform.checking.judging.derived import Derived
 from closedform.checking.judging.following import (
     by_equation,
     by_limit,
@@ -58,7 +59,7 @@ def carried_from(claim: Claim, setting: Setting) -> int | None:
             break
         try:
             found = compare(opened, derived.value, scope, ground, approximate=claim.approximate)
-        except OUTSIDE:
+        except UNDECIDED:
             continue
         if found.passes:
             return derived.root
@@ -101,7 +102,7 @@ def _rooted(claim: Claim, setting: Setting, ground: Ground) -> Iterator[Derived]
             derived = next(found)
         except StopIteration:
             return
-        except OUTSIDE:
+        except UNDECIDED:
             return
         if derived.root is not None:
             yield derived
@@ -125,12 +126,12 @@ def _special(claim: Claim, setting: Setting, ground: Ground) -> int | None:
                     if root is not None:
                         return root
         return by_functions(claim, setting, ground) or by_definitions(claim, setting, ground)
-    except OUTSIDE:
+    except UNDECIDED:
         return None
 
 
 def _tried(rule: Rule, claim: Claim, setting: Setting, ground: Ground) -> int | None:
     try:
         return rule(claim, setting, ground)
-    except OUTSIDE:
+    except UNDECIDED:
         return None

@@ -5,9 +5,9 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import replace
 
-from closedform.algebra.elementary import Element, NotElementaryError
+from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim
-from closedform.checking.errors import NotJudgedError
+from closedform.checking.errors import UNDECIDED, NotJudgedError
 from closedform.checking.judging.ansatz import fit
 from closedform.checking.judging.compare import compare
 from closedform.checking.judging.free_solutions import free_residual
@@ -33,7 +33,6 @@ __all__ = [
 
 OPEN = ("solution", "output", "particular solution", "transform", "exp A")
 """Claims whose open constants the truth determines."""
-OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
 
 
 def is_constant_of_integration(name: str, setting: Setting) -> bool:
@@ -85,7 +84,7 @@ def rests_on_constants(claim: Claim, setting: Setting) -> int | None:
         try:
             if _says_the_same(claim, entry, setting, put, ground):
                 return min(roots)
-        except OUTSIDE:
+        except UNDECIDED:
             continue
     return None
 
@@ -129,7 +128,7 @@ def _solved(
     try:
         residual = _residual(entry, names, setting, ground)
         found = fit(residual, names, ground, ground.stretches[0].start)
-    except OUTSIDE:
+    except UNDECIDED:
         return None
     return found.values if found is not None and found.unique else None
 

@@ -5,8 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from closedform.algebra.elementary import NotElementaryError
-from closedform.checking.errors import NotJudgedError
+from closedform.checking.errors import UNDECIDED
 from closedform.checking.standing.author import Entry
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Setting
@@ -15,9 +14,7 @@ from closedform.checking.values.matrices import (
 )
 from closedform.checking.values.scope import Value
 
-__all__ = ["OUTSIDE", "Derived", "stated_matrices", "stated_values", "value_of_entry"]
-
-OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
+__all__ = ["Derived", "stated_matrices", "stated_values", "value_of_entry"]
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,7 +42,7 @@ def value_of_entry(entry: Entry, setting: Setting, ground: Ground) -> Value | No
     """Return the value of an earlier line, None where it has none that is exact."""
     try:
         return setting.value(entry.value, ground)
-    except OUTSIDE:
+    except UNDECIDED:
         return None
 
 

@@ -5,9 +5,9 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 
-from closedform.algebra.elementary import Element, NotElementaryError
+from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim
-from closedform.checking.errors import NotJudgedError
+from closedform.checking.errors import UNDECIDED
 from closedform.checking.judging.transforms import laplace
 from closedform.checking.standing.author import Entry
 from closedform.checking.standing.ground import SPECTRAL, Ground
@@ -16,8 +16,6 @@ from closedform.checking.values.matrices import ExactMatrix, identity
 from closedform.notation.written.tree import Symbol, Written, walk
 
 __all__ = ["by_equation", "by_limit", "by_transform", "with_wrong_column"]
-
-OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
 
 
 @dataclass(frozen=True)
@@ -94,7 +92,7 @@ def _functions(setting: Setting, ground: Ground, place: int, value: Element) -> 
 def _element(entry: Entry, setting: Setting, ground: Ground) -> Element | None:
     try:
         value = setting.value(entry.value, ground)
-    except OUTSIDE:
+    except UNDECIDED:
         return None
     return value if isinstance(value, Element) else None
 
@@ -156,7 +154,7 @@ def with_wrong_column(claim: Claim, setting: Setting, ground: Ground) -> int | N
         and isinstance(vector := setting.value(entry.value, ground), ExactMatrix)
     ]
     roots: list[int] = []
-    for column in value.columns:
+    for column in value.columns if wrong else ():
         found = [root for vector, root in wrong if vector == column]
         if not found and not _in_some_chain(column, ground):
             return None

@@ -22,6 +22,7 @@ from closedform.checking.values.matrices import ExactMatrix
 from closedform.checking.values.scope import Scope
 from closedform.checking.values.signs import both_signs
 from closedform.checking.values.written_back import written_back
+from closedform.notation.written.multiplicity import MULTIPLES
 from closedform.notation.written.tree import Jet, Listing, Symbol, Written, walk
 
 __all__ = [
@@ -36,8 +37,7 @@ MULTIPLICITY = re.compile(
     r"(?:multiplicity|mult\.?|order|Vielfachheit)\D{0,6}(\d+)|(\d+)\s*(?:-fold|fold|times|fach)",
     re.IGNORECASE,
 )
-WORDS = {"double": 2, "twice": 2, "doppelt": 2, "repeated": 2, "triple": 3, "dreifach": 3}
-WORDS |= {"zweifach": 2, "quadruple": 4, "two equal": 2}
+WORDS = {**MULTIPLES, "two equal": 2}
 
 
 def judge_matrix(claim: Claim, setting: Setting) -> Finding:

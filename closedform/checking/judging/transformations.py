@@ -9,6 +9,7 @@ from closedform.checking.judging.authors_matrices import (
     authors_diagonal,
     authors_matrix,
     matrix_value,
+    misfit_of,
 )
 from closedform.checking.judging.canonical import in_authors_order, is_diagonal
 from closedform.checking.judging.compare import has_decimals
@@ -44,11 +45,9 @@ def judge_transformation(claim: Claim, setting: Setting) -> Finding:
         opened = setting.opened(member)
         ground = setting.ground_for(opened)
         matrix = matrix_value(member, setting, ground)
-        if matrix.shape != (ground.size, ground.size):
-            rows, columns = matrix.shape
-            return Finding(
-                "fails", f"it is {rows} by {columns}, the matrix A has {ground.size} rows"
-            )
+        misfit = misfit_of(matrix, ground)
+        if misfit is not None:
+            return misfit
         last = _transformation(matrix, opened, setting, ground)
         if not last.passes:
             return last

@@ -8,9 +8,8 @@ from fractions import Fraction
 
 from flint import acb, arb, ctx
 
-from closedform.algebra.elementary import NotElementaryError
 from closedform.checking.claim import Claim
-from closedform.checking.errors import NotJudgedError
+from closedform.checking.errors import UNDECIDED
 from closedform.checking.judging.judge import judge
 from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.slips.measuring import real, size
@@ -25,7 +24,6 @@ from closedform.notation.written.tree import Jet, Symbol, Written, walk
 
 __all__ = ["aimed", "opened_stretches", "true_value"]
 
-OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
 CHAINS = frozenset({"identity", "definition", "trace", "determinant", "amplitude", "phase"})
 """Kinds whose members are held against one another, not against a value of the model."""
 PROPERTIES = frozenset(
@@ -117,7 +115,7 @@ def _held(trial: Trial, finding: Finding) -> Trial:
     """Return a trial with the points at which its value is known; without, if it is not."""
     try:
         known = list(_known(trial, finding))
-    except OUTSIDE:
+    except UNDECIDED:
         return trial
     if not known:
         return trial

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from closedform.algebra.elementary import Element, NotElementaryError
-from closedform.checking.errors import NotJudgedError
+from closedform.algebra.elementary import Element
+from closedform.checking.errors import UNDECIDED
 from closedform.checking.slips import names
 from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.values.written_back import written_back
@@ -14,7 +14,6 @@ from closedform.notation.written.tree import Apply, Written, changed, walk
 __all__ = ["other_frequencies"]
 
 WAVES = ("sin", "cos")
-OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
 
 
 def other_frequencies(trial: Trial) -> Iterator[Candidate]:
@@ -52,7 +51,7 @@ def other_frequencies(trial: Trial) -> Iterator[Candidate]:
 def _value(angle: Written, trial: Trial) -> Element | None:
     try:
         value = trial.setting.value(angle, trial.ground)
-    except OUTSIDE:
+    except UNDECIDED:
         return None
     return value if isinstance(value, Element) else None
 
@@ -68,5 +67,5 @@ def _modes(trial: Trial) -> Iterator[tuple[Element, Element]]:
             if not imaginary.is_zero and not real.is_zero and square not in seen:
                 seen.append(square)
                 yield field.sqrt(square), field.sqrt(square - real * real)
-        except OUTSIDE:
+        except UNDECIDED:
             continue

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from fractions import Fraction
 
+from closedform.notation.written.tidied import rational_written
 from closedform.notation.written.tree import (
     EULER,
     Apply,
@@ -25,12 +26,7 @@ ZERO, ONE = Literal(Fraction(0)), Literal(Fraction(1))
 
 def number(value: Fraction | int) -> Written:
     """Return a rational number as a formula."""
-    value = Fraction(value)
-    if value < 0:
-        return Negation(number(-value))
-    if value.denominator == 1:
-        return Literal(value)
-    return Quotient(Literal(Fraction(value.numerator)), Literal(Fraction(value.denominator)))
+    return rational_written(Fraction(value))
 
 
 def negated(tree: Written) -> Written:

@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Callable, Iterator
 from itertools import combinations
 
-from closedform.algebra.elementary import Element, NotElementaryError
-from closedform.checking.errors import NotJudgedError
+from closedform.algebra.elementary import Element
+from closedform.checking.errors import UNDECIDED, NotJudgedError
 from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.slips import names
 from closedform.checking.slips.trial import Candidate, Trial
@@ -17,7 +17,6 @@ from closedform.checking.values.scope import Value
 
 __all__ = ["Wrong", "parts", "where_equal"]
 
-OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
 Wrong = tuple[str, str, Value]
 """The name of a slip, where it is, and the value that it leads to."""
 
@@ -47,7 +46,7 @@ def where_equal(
             name, where, value = next(found)
         except StopIteration:
             return
-        except OUTSIDE:
+        except UNDECIDED:
             return
         at = _at(trial, value)
         if at is not None and trial.equals(at):

@@ -5,9 +5,9 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import replace
 
-from closedform.algebra.elementary import Element, NotElementaryError
+from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim
-from closedform.checking.errors import NotJudgedError
+from closedform.checking.errors import UNDECIDED
 from closedform.checking.standing.setting import Setting
 from closedform.checking.values.exact import exact
 from closedform.checking.values.written_back import written_back
@@ -22,8 +22,6 @@ from closedform.notation.written.tree import (
 )
 
 __all__ = ["with_cuts"]
-
-OUTSIDE = (NotJudgedError, NotElementaryError, ZeroDivisionError)
 
 
 def with_cuts(claim: Claim, setting: Setting) -> Setting:
@@ -44,7 +42,7 @@ def _instants(claim: Claim, setting: Setting) -> Iterator[Written]:
     for tree in _switches(claim, setting):
         try:
             value = exact(tree, scope)
-        except OUTSIDE:
+        except UNDECIDED:
             continue
         if not isinstance(value, Element):
             continue

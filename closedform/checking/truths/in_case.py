@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from itertools import chain
 
@@ -56,6 +56,21 @@ class InCase:
     def names(self) -> tuple[str, ...]:
         """The parameters."""
         return self.field.free
+
+    def described(self, truth: CaseTruth) -> CaseTruth:
+        """Return a truth with what is said of the case beside its functions."""
+        return replace(
+            truth,
+            quantities=self.written_quantities,
+            enclosures=self.enclosures,
+            enclosures_at=self.enclosures_at,
+            condition=self.condition,
+            sign=self.region.sign_among(self.names),
+            samples=self.samples,
+            values=self.written_values(),
+            equations=self.region.equations,
+            region=self.region,
+        )
 
     @property
     def condition(self) -> str:

@@ -35,7 +35,7 @@ def _truth(own: InCase) -> CaseTruth:
         {name: (formula,) for name, formula in formulas}, dict.fromkeys(model.states, 1), model.time
     )
     is_small = len(model.states) <= LARGEST_WRITTEN_OUT
-    return CaseTruth(
+    truth = CaseTruth(
         states=model.states,
         jets=tuple((state, 0) for state in model.states),
         time=model.time,
@@ -49,16 +49,8 @@ def _truth(own: InCase) -> CaseTruth:
         solution=pieces_of(functions, [WHOLE]),
         outputs=outputs,
         steady=_steady(own, outputs),
-        quantities=own.written_quantities,
-        enclosures=own.enclosures,
-        enclosures_at=own.enclosures_at,
-        condition=own.condition,
-        sign=own.region.sign_among(own.names),
-        samples=own.samples,
-        values=own.written_values(),
-        equations=own.region.equations,
-        region=own.region,
     )
+    return own.described(truth)
 
 
 def _steady(own: InCase, outputs: tuple[str, ...]) -> dict[str, Written]:

@@ -56,20 +56,12 @@ def _constants(solution: DrivenSolution) -> tuple[tuple[str, Expression], ...]:
 
 
 def _in_case(solution: DrivenSolution, own: InCase) -> CaseTruth:
-    return replace(
+    truth = replace(
         _plain(solution, own.case.transition),
         parameters=own.names,
         eigenvalues=own.eigenvalues(solution.model.reduction.matrix),
-        quantities=own.written_quantities,
-        enclosures=own.enclosures,
-        enclosures_at=own.enclosures_at,
-        condition=own.condition,
-        sign=own.region.sign_among(own.names),
-        samples=own.samples,
-        values=own.written_values(),
-        equations=own.region.equations,
-        region=own.region,
     )
+    return own.described(truth)
 
 
 def _in_numbers(solution: DrivenSolution, stacked: Response) -> Truth:

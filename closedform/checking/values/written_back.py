@@ -13,6 +13,7 @@ from closedform.algebra.fraction_field import Whole
 from closedform.checking.errors import NotJudgedError
 from closedform.checking.values.matrices import ExactMatrix
 from closedform.checking.values.scope import Value
+from closedform.notation.written.tidied import rational_written
 from closedform.notation.written.tree import (
     EULER,
     IMAGINARY,
@@ -194,11 +195,7 @@ MOST_BITS = 13_000
 def _fraction(value: Fraction) -> Written:
     if max(value.numerator.bit_length(), value.denominator.bit_length()) > MOST_BITS:
         raise NotJudgedError("there are numbers of thousands of digits in its right form")
-    if value < 0:
-        return Negation(_fraction(-value))
-    if value.denominator == 1:
-        return Literal(value)
-    return Quotient(Literal(Fraction(value.numerator)), Literal(Fraction(value.denominator)))
+    return rational_written(value)
 
 
 def _times(*factors: Written) -> Written:

@@ -4,17 +4,26 @@ from __future__ import annotations
 
 import re
 
-__all__ = ["asks_for_number", "is_multiplicity", "multiplicity_of"]
+__all__ = ["MULTIPLES", "asks_for_number", "is_multiplicity", "multiplicity_of"]
 
-NUMERALS = {
-    **dict.fromkeys(("one", "simple", "single", "once", "einfach", "ein", "eins"), 1),
-    **dict.fromkeys(("two", "twice", "double", "doppelt", "doppel", "zweifach", "zwei", "deux"), 2),
-    **dict.fromkeys(("twofold", "repeated", "zweimal", "zweimalig", "zweimalige"), 2),
-    **dict.fromkeys(("three", "thrice", "triple", "dreifach", "drei", "trois", "threefold"), 3),
-    **dict.fromkeys(("dreimal", "treble", "dreimalige"), 3),
-    **dict.fromkeys(("four", "quadruple", "vierfach", "vier", "quatre", "fourfold"), 4),
-    **dict.fromkeys(("five", "quintuple", "fünffach", "fuenffach", "cinq", "fivefold"), 5),
+MULTIPLES = {
+    **dict.fromkeys(("double", "twice", "doppelt", "doppel", "zweifach", "twofold", "repeated"), 2),
+    **dict.fromkeys(("zweimal", "zweimalig", "zweimalige"), 2),
+    **dict.fromkeys(("triple", "thrice", "dreifach", "threefold", "dreimal", "treble"), 3),
+    **dict.fromkeys(("dreimalige",), 3),
+    **dict.fromkeys(("quadruple", "vierfach", "fourfold"), 4),
+    **dict.fromkeys(("quintuple", "fünffach", "fuenffach", "fivefold"), 5),
 }
+"""Words that tell how often something counts, wherever they stand."""
+NUMERALS = {
+    **MULTIPLES,
+    **dict.fromkeys(("one", "simple", "single", "once", "einfach", "ein", "eins"), 1),
+    **dict.fromkeys(("two", "zwei", "deux"), 2),
+    **dict.fromkeys(("three", "drei", "trois"), 3),
+    **dict.fromkeys(("four", "vier", "quatre"), 4),
+    **dict.fromkeys(("five", "cinq"), 5),
+}
+"""These, and words that do so only where a multiplicity is told: "two real roots" tells none."""
 COUNT = re.compile(
     r"(?:multiplicit\w*|mult\.?|vielfachheit|vielf\.?|ordnung|order|ordre)\D{0,12}?(?P<a>[1-9][0-9]?)"
     r"|(?P<b>[1-9][0-9]?)\s*[-‐]?\s*(?:fold|fach\w*|times|time|mal|fois|[x×]|\\times)(?!\w)"

@@ -15,7 +15,7 @@ from closedform.notation.written.tree import (
     with_parts,
 )
 
-__all__ = ["tidied"]
+__all__ = ["rational_written", "tidied"]
 
 ZERO, ONE = Literal(Fraction(0)), Literal(Fraction(1))
 
@@ -47,6 +47,15 @@ def tidied(node: Written) -> Written:
             left = tuple(term for term in terms if not _is_exactly(term, 0))
             return Sum(left) if len(left) > 1 else left[0] if left else ZERO
     return whole
+
+
+def rational_written(value: Fraction) -> Written:
+    """Return a rational number as a formula: the sign in front, whole numbers without fraction."""
+    if value < 0:
+        return Negation(rational_written(-value))
+    if value.denominator == 1:
+        return Literal(value)
+    return Quotient(Literal(Fraction(value.numerator)), Literal(Fraction(value.denominator)))
 
 
 def _is_exactly(node: Written, value: int) -> bool:
