@@ -36,6 +36,10 @@ def matrix_exponential(matrix: ExactMatrix, candidates: Iterable[Element] = ()) 
     return ExactMatrix(field, tuple(map(tuple, entries)))
 
 
+LARGEST_TRIED = 12
+"""Rows of a matrix whose eigenvalues are sought among candidates."""
+
+
 def eigenvalues_of(matrix: ExactMatrix, candidates: Iterable[Element] = ()) -> list[Element]:
     """Return the eigenvalues of a constant matrix with their multiplicities.
 
@@ -51,6 +55,8 @@ def eigenvalues_of(matrix: ExactMatrix, candidates: Iterable[Element] = ()) -> l
         half = matrix.trace() / field.number(Fraction(2))
         root = field.sqrt(half * half - matrix.determinant())
         return [half + root, half - root]
+    if size > LARGEST_TRIED:
+        raise NotElementaryError(f"eigenvalues of {size} rows that are no triangle are not sought")
     found: list[Element] = []
     for candidate in candidates:
         if candidate not in found:

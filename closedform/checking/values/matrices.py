@@ -79,6 +79,10 @@ class ExactMatrix:
     def __matmul__(self, other: ExactMatrix) -> ExactMatrix:
         if self.shape[1] != other.shape[0]:
             raise SizeError("a product", self.shape, other.shape)
+        if min(*self.shape, *other.shape) > LARGEST_EXPANDED:
+            numbers = _rational(self), _rational(other)
+            if numbers[0] is not None and numbers[1] is not None:
+                return _of_rational(numbers[0] * numbers[1], self.field)
         zero = self.field.zero
         columns = list(zip(*other.rows, strict=True))
         return ExactMatrix(
@@ -104,9 +108,12 @@ class ExactMatrix:
         if abs(exponent) > LARGEST_POWER:
             raise NotJudgedError(f"a matrix to the power {exponent}")
         base = self.inverse() if exponent < 0 else self
-        result = identity(self.field, self.shape[0])
-        for _ in range(abs(exponent)):
-            result = result @ base
+        result, left = identity(self.field, self.shape[0]), abs(exponent)
+        while left:
+            if left & 1:
+                result = result @ base
+            left >>= 1
+            base = base @ base if left else base
         return result
 
     def inverse(self) -> ExactMatrix:
@@ -144,6 +151,9 @@ class ExactMatrix:
 
     def rank(self) -> int:
         """Return the rank over the field of its entries."""
+        numbers = _rational(self)
+        if numbers is not None:
+            return numbers.rank()
         rows = [list(row) for row in self.rows]
         return _reduced(rows, self.shape[1])[0]
 
