@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from functools import cache
 from pathlib import Path
 
 import pytest
@@ -12,14 +13,20 @@ from tests.document.driven_samples import DRIVEN_SAMPLES
 from tests.document.test_compiled import complaints, log_of
 
 
+@cache
+def rendered(name: str, depth: str) -> str:
+    """The text of a sample, rendered once for all tests."""
+    return render(DRIVEN_SAMPLES[name](), depth=depth)
+
+
 def text_of(name: str, depth: str = "working") -> str:
-    return " ".join(render(DRIVEN_SAMPLES[name](), depth=depth).split())
+    return " ".join(rendered(name, depth).split())
 
 
 @pytest.mark.parametrize("depth", DEPTHS)
 @pytest.mark.parametrize("name", DRIVEN_SAMPLES)
 def test_references_point_at_labels_that_are_set_once(name: str, depth: str) -> None:
-    text = render(DRIVEN_SAMPLES[name](), depth=depth)
+    text = rendered(name, depth)
     labels = re.findall(r"\\label\{([^}]*)\}", text)
     cited = set(re.findall(r"\\(?:eq|page)?ref\{([^}]*)\}", text))
     assert len(labels) == len(set(labels))
@@ -29,7 +36,7 @@ def test_references_point_at_labels_that_are_set_once(name: str, depth: str) -> 
 @pytest.mark.parametrize("depth", DEPTHS)
 @pytest.mark.parametrize("name", DRIVEN_SAMPLES)
 def test_no_sentence_has_a_word_twice_or_a_gap(name: str, depth: str) -> None:
-    text = render(DRIVEN_SAMPLES[name](), depth=depth)
+    text = rendered(name, depth)
     body = text.split(r"\begin{document}")[1]
     prose = re.sub(r"\\begin\{([a-ce-z]\w+\*?)\}.*?\\end\{\1\}", "#", body, flags=re.DOTALL)
     prose = re.sub(r"\$[^$]*\$", "#", prose)
@@ -40,21 +47,19 @@ def test_no_sentence_has_a_word_twice_or_a_gap(name: str, depth: str) -> None:
 
 @pytest.mark.parametrize("name", DRIVEN_SAMPLES)
 def test_the_same_derivation_gives_the_same_bytes(name: str) -> None:
-    assert render(DRIVEN_SAMPLES[name]()) == render(DRIVEN_SAMPLES[name]())
+    assert render(DRIVEN_SAMPLES[name]()) == rendered(name, "working")
 
 
 @pytest.mark.parametrize("name", DRIVEN_SAMPLES)
 def test_a_document_compiles_without_complaint(name: str, pdflatex: str, tmp_path: Path) -> None:
-    assert (
-        complaints(log_of(render(DRIVEN_SAMPLES[name](), depth="full"), pdflatex, tmp_path)) == []
-    )
+    assert complaints(log_of(rendered(name, "full"), pdflatex, tmp_path)) == []
 
 
 @pytest.mark.parametrize("name", ["mount", "five pulses", "source switched off"])
 def test_a_working_document_compiles_without_complaint(
     name: str, pdflatex: str, tmp_path: Path
 ) -> None:
-    assert complaints(log_of(render(DRIVEN_SAMPLES[name]()), pdflatex, tmp_path)) == []
+    assert complaints(log_of(rendered(name, "working"), pdflatex, tmp_path)) == []
 
 
 def test_equations_are_printed_as_typed_with_dots() -> None:
@@ -118,7 +123,7 @@ def test_full_documents_have_what_working_ones_leave_out() -> None:
 
 
 def test_a_small_model_takes_few_pages(pdflatex: str, tmp_path: Path) -> None:
-    log = log_of(render(DRIVEN_SAMPLES["source switched off"]()), pdflatex, tmp_path)
+    log = log_of(rendered("source switched off", "working"), pdflatex, tmp_path)
     pages = re.search(r"\((\d+) pages", log)
     assert pages is not None
     assert int(pages[1]) <= 5
