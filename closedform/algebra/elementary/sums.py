@@ -128,7 +128,7 @@ class Sums:
             for power in range(k, -1, -1):
                 c = c / rate  # noqa: PLW2901  the next coefficient comes from this
                 _put(total, (number, power), c)
-                c = c * self.tower.number(-power)  # noqa: PLW2901
+                c = c * self.tower.number(-power)  # noqa: PLW2901  likewise
         return total
 
     def composed(self, one: Terms, rate: Constant, offset: Constant) -> Terms:

@@ -9,10 +9,7 @@ from closedform.checking.judging.rounded_forms import exact_form
 from closedform.checking.judging.spectrum import roots_claimed
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.matrices import (
-    ExactMatrix,
-    diagonal,
-)
+from closedform.checking.values.matrices import ExactMatrix, diagonal
 from closedform.notation.written.tree import Written
 
 __all__ = ["authors_diagonal", "authors_matrix", "matrix_value", "misfit_of"]

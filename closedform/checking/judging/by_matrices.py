@@ -42,23 +42,23 @@ __all__ = [
 ]
 
 
-def transformations(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def transformations(setting: Setting, ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield matrices whose columns are the author's eigenvectors, in the order of stating."""
-    columns: list[Derived] = []
+    columns: list[Derived[ExactMatrix]] = []
     for entry in setting.author.entries:
         if entry.says in ("eigenvector", "generalized eigenvector"):
             value = value_of_entry(entry, setting, ground)
             if isinstance(value, ExactMatrix):
                 shaped = value if value.shape[1] == 1 else value.transposed
                 columns.append(Derived(shaped, entry.root))
-    vectors = [d.value for d in columns if isinstance(d.value, ExactMatrix)]
+    vectors = [d.value for d in columns]
     if len(vectors) == ground.size and all(v.shape == (ground.size, 1) for v in vectors):
         rows = tuple(zip(*(v.entries for v in vectors), strict=True))
         matrix = ExactMatrix(ground.field, rows)
         yield columns[0].joined(matrix, *columns[1:])
 
 
-def diagonals(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def diagonals(setting: Setting, ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield the diagonal matrix of the author's eigenvalues in their order."""
     values: list[Element] = []
     root: int | None = None
@@ -78,7 +78,7 @@ def diagonals(setting: Setting, ground: Ground) -> Iterator[Derived]:
 DEGREE = 2
 
 
-def of_quantities(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def of_quantities(setting: Setting, ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield the roots of s^2 + 2 zeta omega s + omega^2 for a wrong zeta or omega_n."""
     field = ground.field
     trace, product = ground.matrix.trace(), ground.matrix.determinant()
@@ -93,38 +93,34 @@ def of_quantities(setting: Setting, ground: Ground) -> Iterator[Derived]:
         yield omega.joined(diagonal(field, [root - half, -root - half]), zeta)
 
 
-def canonical_forms(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def canonical_forms(setting: Setting, ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield J as the author's eigenvalues or P give it."""
     yield from diagonals(setting, ground)
     for matrix in stated_matrices("P", setting, ground):
-        if isinstance(matrix.value, ExactMatrix):
-            yield matrix.joined(matrix.value.inverse() @ ground.matrix @ matrix.value)
+        yield matrix.joined(matrix.value.inverse() @ ground.matrix @ matrix.value)
 
 
-def block_exponentials(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def block_exponentials(setting: Setting, ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield e^(Jt) of the author's J, or of the diagonal of the author's eigenvalues."""
     candidates = ground.eigenvalues
     for says in ("J", "real form"):
         for matrix in stated_matrices(says, setting, ground):
-            if isinstance(matrix.value, ExactMatrix):
-                yield matrix.joined(matrix_exponential(matrix.value, candidates))
+            yield matrix.joined(matrix_exponential(matrix.value, candidates))
     for matrix in diagonals(setting, ground):
-        if isinstance(matrix.value, ExactMatrix):
-            yield matrix.joined(matrix_exponential(matrix.value))
+        yield matrix.joined(matrix_exponential(matrix.value))
 
 
-def inverses(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def inverses(setting: Setting, ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield the inverses of the author's P."""
     for matrix in (*stated_matrices("P", setting, ground), *transformations(setting, ground)):
-        if isinstance(matrix.value, ExactMatrix):
-            yield matrix.joined(matrix.value.inverse())
+        yield matrix.joined(matrix.value.inverse())
 
 
-def transitions(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def transitions(setting: Setting, ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield e^(At) as the author's P, e^(Jt) and P^(-1) give it, or the author's own."""
     yield from stated_matrices("exp A", setting, ground)
     for matrix in stated_matrices("matrix", setting, ground):
-        if isinstance(matrix.value, ExactMatrix) and matrix.root is not None:
+        if matrix.root is not None:
             yield from as_far_as_known(_exponential(matrix))
     left = [*stated_matrices("P", setting, ground), *transformations(setting, ground)]
     middle = [
@@ -142,7 +138,7 @@ def transitions(setting: Setting, ground: Ground) -> Iterator[Derived]:
     yield from as_far_as_known(_companions(setting, ground))
 
 
-def as_far_as_known(found: Iterator[Derived]) -> Iterator[Derived]:
+def as_far_as_known(found: Iterator[Derived[ExactMatrix]]) -> Iterator[Derived[ExactMatrix]]:
     """Yield what can be worked out: the first that cannot is the last."""
     while True:
         try:
@@ -151,23 +147,20 @@ def as_far_as_known(found: Iterator[Derived]) -> Iterator[Derived]:
             return
 
 
-def _exponential(matrix: Derived) -> Iterator[Derived]:
-    if isinstance(matrix.value, ExactMatrix):
-        yield matrix.joined(matrix_exponential(matrix.value))
+def _exponential(matrix: Derived[ExactMatrix]) -> Iterator[Derived[ExactMatrix]]:
+    yield matrix.joined(matrix_exponential(matrix.value))
 
 
-def _product(p: Derived, e: Derived, setting: Setting, ground: Ground) -> Iterator[Derived]:
+def _product(
+    p: Derived[ExactMatrix], e: Derived[ExactMatrix], setting: Setting, ground: Ground
+) -> Iterator[Derived[ExactMatrix]]:
     """Yield P e^(Jt) P^(-1), with the author's P^(-1) and with the right one."""
-    assert isinstance(p.value, ExactMatrix)  # noqa: S101  made so
-    assert isinstance(e.value, ExactMatrix)  # noqa: S101
     for q in (*stated_matrices("P inverse", setting, ground), p.joined(p.value.inverse())):
-        assert isinstance(q.value, ExactMatrix)  # noqa: S101
         yield p.joined(p.value @ e.value @ q.value, e, q)
 
 
-def _own_exponentials(p: Derived, ground: Ground) -> Iterator[Derived]:
+def _own_exponentials(p: Derived[ExactMatrix], ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield e^(Jt) for a P that was stated without J: its columns tell the order."""
-    assert isinstance(p.value, ExactMatrix)  # noqa: S101
     if p.root is None:
         product = p.value.inverse() @ ground.matrix @ p.value
         yield Derived(matrix_exponential(product, ground.eigenvalues))
@@ -176,11 +169,12 @@ def _own_exponentials(p: Derived, ground: Ground) -> Iterator[Derived]:
         yield Derived(matrix_exponential(diagonal(ground.field, values)))
 
 
-def _own_vectors(e: Derived, setting: Setting, ground: Ground) -> Iterator[Derived]:
+def _own_vectors(
+    e: Derived[ExactMatrix], setting: Setting, ground: Ground
+) -> Iterator[Derived[ExactMatrix]]:
     """Yield P for an e^(Jt) that was stated without P: that of a right J, or of a diagonal one."""
-    assert isinstance(e.value, ExactMatrix)  # noqa: S101
     for form in stated_matrices("J", setting, ground):
-        if form.root is None and isinstance(form.value, ExactMatrix):
+        if form.root is None:
             for p in transformations_for(form.value, ground):
                 yield Derived(p)
     zero = ground.field.zero
@@ -193,30 +187,26 @@ def _own_vectors(e: Derived, setting: Setting, ground: Ground) -> Iterator[Deriv
 
 def _is_canonical_itself(setting: Setting, ground: Ground) -> bool:
     """Whether the author's J is A itself, so that P is the unit matrix."""
-    for matrix in stated_matrices("J", setting, ground):
-        if isinstance(matrix.value, ExactMatrix) and (matrix.value - ground.matrix).is_zero:
-            return True
-    return False
+    stated = stated_matrices("J", setting, ground)
+    return any((matrix.value - ground.matrix).is_zero for matrix in stated)
 
 
-def polynomials(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def polynomials(setting: Setting, ground: Ground) -> Iterator[Derived[Element]]:
     """Yield the characteristic polynomials of the author's matrices."""
     variable = ground.field.name(SPECTRAL)
     for matrix in stated_matrices("matrix", setting, ground):
-        if isinstance(matrix.value, ExactMatrix):
-            total = ground.field.zero
-            for c in reversed(characteristic_coefficients(matrix.value)):
-                total = total * variable + c
-            yield matrix.joined(total)
+        total = ground.field.zero
+        for c in reversed(characteristic_coefficients(matrix.value)):
+            total = total * variable + c
+        yield matrix.joined(total)
 
 
-def _companions(setting: Setting, ground: Ground) -> Iterator[Derived]:
+def _companions(setting: Setting, ground: Ground) -> Iterator[Derived[ExactMatrix]]:
     """Yield e^(Ct) for the companion matrix of the author's eigenvalues, for one unknown."""
     jets = ground.truth.jets
     if len({name for name, _ in jets}) != 1 or [k for _, k in jets] != list(range(len(jets))):
         return
     for matrix in diagonals(setting, ground):
-        assert isinstance(matrix.value, ExactMatrix)  # noqa: S101
         coefficients = characteristic_coefficients(matrix.value)
         zero, one, size = ground.field.zero, ground.field.one, ground.size
         rows = [tuple(one if j == i + 1 else zero for j in range(size)) for i in range(size - 1)]

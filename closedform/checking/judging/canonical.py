@@ -12,9 +12,7 @@ from closedform.checking.judging.rounded_forms import exact_form
 from closedform.checking.judging.similar import is_block_form, is_similar
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.matrices import (
-    ExactMatrix,
-)
+from closedform.checking.values.matrices import ExactMatrix
 from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.tree import Product, Written

@@ -225,7 +225,7 @@ def _differing(value: Value, true: Value) -> tuple[tuple[int, int], ...]:
     """Return the places, counted from 1, in which two values of one shape differ."""
     if isinstance(value, Element) or isinstance(true, Element):
         assert isinstance(value, Element)  # noqa: S101  shapes are equal
-        assert isinstance(true, Element)  # noqa: S101
+        assert isinstance(true, Element)  # noqa: S101  likewise
         return () if (value - true).is_zero else ((1, 1),)
     return tuple(
         (i + 1, j + 1)

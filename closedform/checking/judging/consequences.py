@@ -32,6 +32,7 @@ from closedform.checking.judging.following import (
 )
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Setting
+from closedform.checking.values.scope import Value
 
 __all__ = ["carried_from"]
 
@@ -76,7 +77,7 @@ def _at_instant(claim: Claim, setting: Setting, ground: Ground) -> Ground:
     return ground
 
 
-def _rooted(claim: Claim, setting: Setting, ground: Ground) -> Iterator[Derived]:
+def _rooted(claim: Claim, setting: Setting, ground: Ground) -> Iterator[Derived[Value]]:
     """Yield the values for a claim that rest on a wrong line; what cannot be worked out, not."""
     ways = {
         "exp A": transitions,
@@ -85,6 +86,7 @@ def _rooted(claim: Claim, setting: Setting, ground: Ground) -> Iterator[Derived]
         "P": transformations,
         "J": canonical_forms,
     }
+    found: Iterator[Derived[Value]]
     if claim.says in ways:
         found = ways[claim.says](setting, ground)
     elif claim.says in ("solution", "output"):

@@ -11,11 +11,7 @@ from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.rounded_vectors import rounded_direction
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Setting
-from closedform.checking.values.matrices import (
-    ExactMatrix,
-    characteristic_coefficients,
-    identity,
-)
+from closedform.checking.values.matrices import ExactMatrix, characteristic_coefficients, identity
 from closedform.notation.written.tree import Written
 
 __all__ = ["eigenvalue_of_vector", "eigenvectors", "named_direction", "rounded_text"]

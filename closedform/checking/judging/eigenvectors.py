@@ -20,10 +20,7 @@ from closedform.checking.judging.eigenspaces import (
 from closedform.checking.recognising.left_sides import base_and_indices
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.matrices import (
-    ExactMatrix,
-    identity,
-)
+from closedform.checking.values.matrices import ExactMatrix, identity
 from closedform.checking.values.signs import both_signs
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.plain_form import plain_written

@@ -17,18 +17,10 @@ from closedform.checking.judging.similar import is_block_form, is_similar
 from closedform.checking.standing.ground import SPECTRAL, Ground
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.values.exponential import matrix_exponential
-from closedform.checking.values.matrices import (
-    ExactMatrix,
-    identity,
-)
+from closedform.checking.values.matrices import ExactMatrix, identity
 from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
-from closedform.notation.written.tree import (
-    Array,
-    Symbol,
-    Written,
-    walk,
-)
+from closedform.notation.written.tree import Array, Symbol, Written, walk
 
 __all__ = ["judge_block_exponential", "judge_resolvent", "judge_transition"]
 

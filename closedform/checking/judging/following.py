@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 from closedform.algebra.elementary import Element
 from closedform.checking.claim import Claim
-from closedform.checking.errors import UNDECIDED
+from closedform.checking.judging.derived import value_of_entry
 from closedform.checking.judging.transforms import laplace
 from closedform.checking.standing.author import Entry
 from closedform.checking.standing.ground import SPECTRAL, Ground
@@ -90,10 +90,7 @@ def _functions(setting: Setting, ground: Ground, place: int, value: Element) -> 
 
 
 def _element(entry: Entry, setting: Setting, ground: Ground) -> Element | None:
-    try:
-        value = setting.value(entry.value, ground)
-    except UNDECIDED:
-        return None
+    value = value_of_entry(entry, setting, ground)
     return value if isinstance(value, Element) else None
 
 

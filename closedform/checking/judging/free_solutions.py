@@ -19,18 +19,10 @@ from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.standing.stretch import Stretch
 from closedform.checking.values.exact import exact
-from closedform.checking.values.matrices import (
-    ExactMatrix,
-    characteristic_coefficients,
-    identity,
-)
+from closedform.checking.values.matrices import ExactMatrix, characteristic_coefficients, identity
 from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
-from closedform.notation.written.tree import (
-    Literal,
-    Written,
-    walk,
-)
+from closedform.notation.written.tree import Literal, Written, walk
 
 __all__ = ["free_residual", "judge_general", "judge_homogeneous", "judge_particular"]
 

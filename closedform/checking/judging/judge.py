@@ -52,12 +52,7 @@ from closedform.checking.standing.cuts import with_cuts
 from closedform.checking.standing.instants import at_instants
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.standing.units import in_base_units, in_model_units
-from closedform.notation.written.tree import (
-    Literal,
-    Symbol,
-    Written,
-    walk,
-)
+from closedform.notation.written.tree import Literal, Symbol, Written, walk
 
 __all__ = ["judge", "judged"]
 

@@ -31,12 +31,12 @@ __all__ = ["QUANTITIES", "judge_definition", "judge_identity", "judge_quantity",
 
 def judge_value(claim: Claim, setting: Setting) -> Finding:
     """Judge the value of a state, a derivative or an output at an instant."""
-    if claim.at is None or not claim.subject:
+    instant = claim.at
+    if instant is None or not claim.subject:
         return judge_identity(claim, setting)
 
     def true(ground: Ground) -> Value:
-        assert claim.at is not None  # noqa: S101
-        at = setting.value(claim.at, ground)
+        at = setting.value(instant, ground)
         if isinstance(at, ExactMatrix) or not at.is_constant:
             raise NotJudgedError("the instant of a value is a number")
         for stretch in reversed(ground.stretches):

@@ -11,19 +11,11 @@ from closedform.checking.judging.ansatz import Fit, fit
 from closedform.checking.standing.ground import SPECTRAL, Ground
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.values.exact import exact
-from closedform.checking.values.matrices import (
-    ExactMatrix,
-)
+from closedform.checking.values.matrices import ExactMatrix
 from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
-from closedform.notation.written.tree import (
-    Array,
-    Power,
-    Symbol,
-    Written,
-    walk,
-)
+from closedform.notation.written.tree import Array, Power, Symbol, Written, walk
 
 __all__ = [
     "CONSTANTS",

@@ -17,14 +17,7 @@ from closedform.checking.errors import NotJudgedError
 from closedform.checking.judging.compare import has_decimals
 from closedform.checking.values.matrices import ExactMatrix
 from closedform.checking.values.spread import spread
-from closedform.notation.written.tree import (
-    Literal,
-    Negation,
-    Product,
-    Quotient,
-    Sum,
-    Written,
-)
+from closedform.notation.written.tree import Literal, Negation, Product, Quotient, Sum, Written
 
 __all__ = ["rounded_direction"]
 

@@ -12,10 +12,7 @@ from closedform.checking.judging.open_constants import constants_of
 from closedform.checking.judging.transformed import judge_transform
 from closedform.checking.judging.true_solutions import on_stretches, solution_tree, solution_value
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.notation.written.tree import (
-    Jet,
-    Transform,
-)
+from closedform.notation.written.tree import Jet, Transform
 
 __all__ = ["judge_solution"]
 

@@ -9,14 +9,10 @@ from closedform.checking.judging.held import held_against
 from closedform.checking.judging.true_solutions import solution_value
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.matrices import (
-    column,
-)
+from closedform.checking.values.matrices import column
 from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
-from closedform.notation.written.tree import (
-    Written,
-)
+from closedform.notation.written.tree import Written
 
 __all__ = ["judge_steady"]
 

@@ -23,9 +23,7 @@ from closedform.checking.judging.held import held_against
 from closedform.checking.judging.similar import is_block_form, is_similar
 from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.values.matrices import (
-    ExactMatrix,
-)
+from closedform.checking.values.matrices import ExactMatrix
 from closedform.checking.values.scope import Value
 from closedform.checking.values.spread import spread
 from closedform.checking.values.written_back import written_back

@@ -17,11 +17,7 @@ from closedform.checking.standing.ground import Ground
 from closedform.checking.standing.setting import Finding, Setting
 from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
-from closedform.notation.written.tree import (
-    Symbol,
-    Written,
-    walk,
-)
+from closedform.notation.written.tree import Symbol, Written, walk
 
 __all__ = ["judge_transform"]
 

@@ -17,11 +17,7 @@ from closedform.checking.standing.stretch import Stretch
 from closedform.checking.values.exact import applies
 from closedform.checking.values.scope import Value
 from closedform.checking.values.written_back import written_back
-from closedform.notation.written.tree import (
-    Range,
-    Symbol,
-    Written,
-)
+from closedform.notation.written.tree import Range, Symbol, Written
 
 __all__ = ["on_stretches", "solution_tree", "solution_value", "stretches_meant"]
 

@@ -21,12 +21,7 @@ from closedform.checking.recognising.shapes import (
 )
 from closedform.checking.standing.facts import Facts
 from closedform.checking.values.conjugates import with_conjugates, with_names
-from closedform.notation.written.tree import (
-    Jet,
-    Statement,
-    Symbol,
-    Written,
-)
+from closedform.notation.written.tree import Jet, Statement, Symbol, Written
 
 __all__ = ["claims_of"]
 

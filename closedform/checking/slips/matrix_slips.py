@@ -87,7 +87,7 @@ def _inverted(trial: Trial) -> Iterator[Candidate]:
 
 
 def _adjugates(trial: Trial, spot: Spot) -> Iterator[Candidate]:
-    assert isinstance(spot.node, Array)  # noqa: S101
+    assert isinstance(spot.node, Array)  # noqa: S101  a spot of _arrays
     rows = spot.node.rows
     signed = tuple(
         tuple(negated(e) if (i + j) % 2 else e for j, e in enumerate(row))
@@ -111,7 +111,7 @@ def rearranged_first(trial: Trial) -> Iterator[Candidate]:
 def rearranged(trial: Trial) -> Iterator[Candidate]:
     """Yield the matrix transposed, and with two rows, columns or entries exchanged."""
     for spot in _arrays(trial):
-        assert isinstance(spot.node, Array)  # noqa: S101
+        assert isinstance(spot.node, Array)  # noqa: S101  a spot of _arrays
         for name, where, rows in _orders(trial, spot.node.rows):
             yield Candidate(name, where, trial.changed(spot, Array(rows)))
 

@@ -41,7 +41,7 @@ def narrowed(trial: Trial) -> Trial:
 def _entry(
     trial: Trial, array: Spot, row: int, column: int, points: tuple[Point, ...]
 ) -> Trial | None:
-    assert isinstance(array.node, Array)  # noqa: S101
+    assert isinstance(array.node, Array)  # noqa: S101  asked for before
     rows = array.node.rows
     if row > len(rows) or column > len(rows[0]):
         return None

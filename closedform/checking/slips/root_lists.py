@@ -148,7 +148,7 @@ def _root_factor(trial: Trial, inner: Trial, spot: Spot) -> Iterator[Candidate]:
 
 
 def _root_number(trial: Trial, inner: Trial, spot: Spot) -> Iterator[Candidate]:
-    assert isinstance(spot.node, Literal)  # noqa: S101
+    assert isinstance(spot.node, Literal)  # noqa: S101  asked for before
     literal = spot.node
 
     def tree(new: Written) -> Written:

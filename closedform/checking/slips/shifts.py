@@ -88,11 +88,13 @@ def other_names(trial: Trial) -> Iterator[Candidate]:
     for one in sorted(used):
         for name in known:
             if name != one:
-                tree = changed(
-                    trial.tree,
-                    lambda n, one=one, name=name: Symbol(name) if n == Symbol(one) else None,  # type: ignore[misc]
-                )
+                tree = _with_name(trial.tree, one, name)
                 yield Candidate(_name(one, name), f"{name}, not {one}", tree)
+
+
+def _with_name(tree: Written, one: str, other: str) -> Written:
+    """Return a formula with another name in the place of one."""
+    return changed(tree, lambda node: Symbol(other) if node == Symbol(one) else None)
 
 
 def _name(wrong: str, right: str) -> str:

@@ -16,10 +16,7 @@ from closedform.checking.slips.trial import Candidate, Trial
 from closedform.checking.values.matrices import ExactMatrix, diagonal, identity
 from closedform.checking.values.written_back import written_back
 from closedform.notation.written.plain_form import plain_written
-from closedform.notation.written.tree import (
-    Array,
-    Written,
-)
+from closedform.notation.written.tree import Array, Written
 
 __all__ = ["canonical", "conjugates", "eigenvectors", "transformations"]
 

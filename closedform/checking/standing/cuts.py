@@ -11,15 +11,7 @@ from closedform.checking.errors import UNDECIDED
 from closedform.checking.standing.setting import Setting
 from closedform.checking.values.exact import exact
 from closedform.checking.values.written_back import written_back
-from closedform.notation.written.tree import (
-    Apply,
-    Negation,
-    Piecewise,
-    Range,
-    Sum,
-    Written,
-    walk,
-)
+from closedform.notation.written.tree import Apply, Negation, Piecewise, Range, Sum, Written, walk
 
 __all__ = ["with_cuts"]
 

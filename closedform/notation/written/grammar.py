@@ -86,7 +86,7 @@ class _Given(Lexer):
     def __init__(self, lexer_conf: object) -> None:
         self.conf = lexer_conf
 
-    def lex(self, lexer_state: LexerState, parser_state: Any) -> Iterator[Token]:  # noqa: ARG002
+    def lex(self, lexer_state: LexerState, parser_state: Any) -> Iterator[Token]:  # noqa: ARG002  Lark's
         """Yield nothing: the tokens are fed."""
         return iter(())
 
@@ -108,7 +108,7 @@ def tree_of(tokens: Sequence[Token]) -> tuple[tuple[Written, ...], tuple[str, ..
         for last in tokens:
             parser.feed_token(last)
         last = None
-        part: Part = parser.feed_eof()  # type: ignore[no-untyped-call]
+        part: Part = parser.feed_eof()  # type: ignore[no-untyped-call]  # Lark has no type for it
     except UnexpectedToken as error:
         found = None if error.token.type == "$END" else error.token
         raise StoppedError(found, frozenset(error.accepts or ())) from None

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from dataclasses import replace
 from fractions import Fraction
 
 from closedform.notation.written.latex_lexer import Raw
@@ -48,7 +49,13 @@ def scaled(number: Literal, exponent: int, end: int) -> Literal:
             f"powers of ten go up to {MOST_DIGITS}; choose another unit",
         )
     scale = Fraction(10) ** exponent
-    return Literal(number.value * scale, number.last_place * scale, True, number.start, end)  # noqa: FBT003
+    return replace(
+        number,
+        value=number.value * scale,
+        last_place=number.last_place * scale,
+        is_decimal=True,
+        end=end,
+    )
 
 
 def number_at(raws: list[Raw], at: int, end: int) -> tuple[Literal, int]:

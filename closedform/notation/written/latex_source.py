@@ -21,7 +21,7 @@ Cell = tuple[int, int]
 class LatexSource(LatexCommands):
     """Reads the raw tokens of one text in full."""
 
-    def environment(self, at: int, end: int, out: list[Token]) -> int:  # noqa: ARG002
+    def environment(self, at: int, end: int, out: list[Token]) -> int:  # noqa: ARG002  as it is declared
         """Add the environment that begins at an index."""
         raw, close = self.raws[at], self.partners[at]
         if raw.text in MATRICES:

@@ -70,7 +70,7 @@ def read_latex(text: str, declared: Declared, *, place: Place = NOWHERE) -> Read
         source = LatexSource(text, spelled_out(lexed(text)), names)
         raw = source.sequence(0, len(source.raws))
         if not raw:
-            raise StopError(UnexpectedPartError, 0, 0, "", "a formula")  # noqa: TRY301
+            raise StopError(UnexpectedPartError, 0, 0, "", "a formula")  # noqa: TRY301  to be placed below
         tokens = settled(raw, text, names, source.choices)
         choices = found_choices(tokens, names, source.choices, source.logs, text)
         return reading_of(tokens, choices, names, text)

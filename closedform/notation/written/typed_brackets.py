@@ -110,7 +110,7 @@ class Brackets:
             k = self.signs.pairs[k] + 1 if self.signs.pairs.get(k, -1) > k else k + 1
         return [*found, (start, stop)] if start < stop else found
 
-    def _open(self, k: int, stop: int) -> Steps:  # noqa: ARG002
+    def _open(self, k: int, stop: int) -> Steps:  # noqa: ARG002  each step has both bounds
         """Yield a bracket and what it holds."""
         sign, close = self.signs.all[k], self.signs.pairs[k]
         end = self.signs.all[close].end
@@ -205,7 +205,7 @@ class Brackets:
         yield from self._cases(k + 1, stop)
         return stop
 
-    def _primes(self, k: int, stop: int) -> Steps:  # noqa: ARG002
+    def _primes(self, k: int, stop: int) -> Steps:  # noqa: ARG002  each step has both bounds
         """Yield the sign of transposition behind a matrix."""
         sign = self.signs.all[k]
         matrix = self.signs.all[k - 1].kind == "CLOSE" and self.is_listing(k - 1)
