@@ -71,7 +71,7 @@ def _told(report: CheckReport, verdict: LineVerdict) -> str:
         told.append(f"right: {plain_written(verdict.right)}")
     if verdict.slip is not None:
         told.append(f"slip: {slip_words(verdict.slip)}")
-        if verdict.slip.mended is not None:
+        if verdict.slip.mended not in (None, verdict.right):
             told.append(f"mended: {plain_written(verdict.slip.mended)}")
     return "\n".join(told + [f"note: {note}" for note in verdict.notes])
 

@@ -16,7 +16,7 @@ from closedform.document.checked_words import (
     outcome,
     place_of,
     sentence,
-    slip_words,
+    slip_sentence,
     tally,
 )
 from closedform.document.references import References
@@ -116,7 +116,7 @@ def _environment(template: str | Path) -> Environment:
         "typed": typed,
         "claimed": claimed,
         "place_of": place_of,
-        "slip_words": slip_words,
+        "slip_sentence": slip_sentence,
         "sentence": sentence,
         "prose": prose,
         "narrowed": narrowed,

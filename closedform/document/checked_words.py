@@ -14,6 +14,7 @@ __all__ = [
     "outcome",
     "place_of",
     "sentence",
+    "slip_sentence",
     "slip_words",
     "tally",
 ]
@@ -131,6 +132,17 @@ def claimed(verdict: LineVerdict) -> str:
 def slip_words(slip: Slip) -> str:
     """Return what the slip is and where, in words."""
     return f"{slip.name}, {slip.where}" if slip.where else slip.name
+
+
+def slip_sentence(slip: Slip) -> str:
+    """Return the words on a slip as a sentence: all but a unit in front gets a capital.
+
+    >>> slip_sentence(Slip("rounded too early")), slip_sentence(Slip("rad/s for hertz"))
+    ('Rounded too early.', 'rad/s for hertz.')
+    """
+    words = slip_words(slip)
+    first = words.partition(" ")[0].strip(",").replace("-", "")
+    return sentence(words[0].upper() + words[1:] if first.isalpha() else words)
 
 
 def place_of(verdict: LineVerdict) -> str:

@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import re
+import subprocess
+import sys
 from pathlib import Path
 
 from closedform.checking.claim import KINDS
@@ -55,3 +57,16 @@ def test_the_comments_shown_are_read(tmp_path: Path) -> None:
     (tmp_path / "shown.tex").write_text(lines[1], encoding="utf-8")
     done = run("check", "shown.tex", cwd=tmp_path)
     assert "the one line holds" in done.stdout
+
+
+def test_formulas_are_read_as_shown() -> None:
+    section = README.partition("### Reading formulas from other programs")[2]
+    code = re.search(r"(?s)```python\n(.*?)```", section)
+    assert code is not None
+    told = [line.partition("# ") for line in code[1].splitlines() if "# " in line]
+    calls = [call.strip() for call, _, _ in told]
+    program = "\n".join([code[1], *(f"print({call})" for call in calls)])
+    done = subprocess.run(
+        [sys.executable, "-c", program], cwd=ROOT, capture_output=True, text=True, check=True
+    )
+    assert done.stdout.splitlines() == [shown for _, _, shown in told] != []

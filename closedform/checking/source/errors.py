@@ -86,7 +86,7 @@ class NoModelError(SourceError):
         self.example = example
 
     def _paragraph(self) -> str:
-        return f"no model is named; write {self.example}"
+        return f"no model is named; write {self.example}, or name it with --model"
 
 
 class NoSuchModelError(SourceError):
