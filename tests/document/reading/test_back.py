@@ -33,7 +33,7 @@ def starter(name: str) -> DrivenModel | Model | ParametricModel:
 
 @pytest.mark.parametrize("number", range(len(STARTERS)), ids=lambda k: STARTERS[k].stem)
 def test_every_write_up_of_a_starter_is_read_back(number: int) -> None:
-    """In full, and at the lesser depths by turns: what they print is printed in full too."""
+    """In full, and at the lesser depths by turns: nearly all of these is printed in full too."""
     derivation = made_from(load(STARTERS[number]), 6).derivation
     *lesser, full = DEPTHS
     assert full == "full"
