@@ -126,7 +126,9 @@ def test_a_template_of_ones_own_is_used(runner: CliRunner, tank: Path, tmp_path:
     (own / "writeup.tex.j2").write_text("All about << title >>.\n", encoding="utf-8")
     done = runner.invoke(app, ["writeup", str(tank), "--template", str(own)])
     assert done.exit_code == 0
-    assert (tmp_path / "out" / "tank.tex").read_text(encoding="utf-8") == "All about Two tanks.\n"
+    top, *rest = (tmp_path / "out" / "tank.tex").read_text(encoding="utf-8").splitlines()
+    assert top.startswith("% closedform: write-up of tank.toml, ")
+    assert rest == ["All about Two tanks."]
 
 
 @pytest.mark.parametrize(
