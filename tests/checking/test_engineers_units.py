@@ -9,6 +9,7 @@ import pytest
 
 from closedform.checking.standing.units import read_unit, seconds_in_time
 from tests.checking.engineers import Written, written
+from tests.checking.hold import held
 
 MOUNT = """
 title = "Mount"
@@ -118,3 +119,14 @@ def test_the_unit_of_time_is_told_by_the_units_of_parameters() -> None:
     assert seconds_in_time({"R": "kohm", "C": "uF"}) is None
     assert seconds_in_time({"a": "1/h", "b": "1/s"}) is None
     assert seconds_in_time({}) is None
+
+
+def test_an_instant_in_another_unit_of_time_is_not_read() -> None:
+    """The reader leaves out units of instants; a minute is no second."""
+    parameters = {
+        "C": {"assume": "positive", "value": "100", "unit": "J/K"},
+        "G": {"assume": "positive", "value": "5", "unit": "W/K"},
+    }
+    keys = {"equations": ["C*T' = -G*T"], "initial": {"T": "12"}, "parameters": parameters}
+    found = held(keys, r"T(60\,\mathrm{s})\approx0.597", r"T(1\,\mathrm{min})\approx11.4")
+    assert [v.verdict for v in found] == ["holds to the digits shown", "not read"]

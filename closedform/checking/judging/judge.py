@@ -51,7 +51,7 @@ from closedform.checking.standing.author import Author
 from closedform.checking.standing.cuts import with_cuts
 from closedform.checking.standing.instants import at_instants
 from closedform.checking.standing.setting import Finding, Setting
-from closedform.checking.standing.units import in_base_units, in_model_units
+from closedform.checking.standing.units import in_base_units, in_model_units, other_time_unit
 from closedform.notation.written.tree import Literal, Symbol, Written, walk
 
 __all__ = ["judge", "judged"]
@@ -97,6 +97,9 @@ def judge(claim: Claim, setting: Setting) -> Finding:
     scaled = in_model_units(claim, setting.ground.truth.units)
     if isinstance(scaled, str):
         return Finding("fails", scaled)
+    other = other_time_unit(claim.line.text, setting.ground.truth.units)
+    if claim.at is not None and other is not None:
+        return Finding("not read", f"its instant is in {other}, the time of the model is not")
     claim = scaled
     judge_it, setting = JUDGES.get(claim.says, judge_identity), with_cuts(claim, setting)
     if claim.says == "identity" and any(map(is_order, claim.statements)):

@@ -11,7 +11,14 @@ from fractions import Fraction
 from closedform.checking.claim import Claim, Group
 from closedform.notation.written.tree import Literal, Negation, Product, Symbol, Written
 
-__all__ = ["Unit", "in_base_units", "in_model_units", "read_unit", "seconds_in_time"]
+__all__ = [
+    "Unit",
+    "in_base_units",
+    "in_model_units",
+    "other_time_unit",
+    "read_unit",
+    "seconds_in_time",
+]
 
 PREFIXES = {"": 0, "k": 3, "M": 6, "G": 9, "d": -1, "c": -2, "m": -3, "µ": -6, "μ": -6, "u": -6}
 PREFIXES |= {"n": -9, "p": -12}
@@ -112,6 +119,30 @@ def seconds_in_time(units: Mapping[str, str]) -> Fraction | None:
     coherent = len(known) == len(read) and all(unit.factor == 1 for unit in known)
     timed = any(base == "s" for unit in known for base, _ in unit.powers)
     return Fraction(1) if coherent and timed else None
+
+
+INSTANT = re.compile(r"\(([^()]{0,80})\)[^=≈~]{0,40}(?:=|≈|~|\\approx|\\simeq)")
+TIME_UNIT = re.compile(r"(?<![A-Za-z])([munµ]?s|min|h|d|a)(?![A-Za-z])")
+
+
+def other_time_unit(text: str, units: Mapping[str, str]) -> str | None:
+    r"""Return the unit of an instant in brackets on the left, if it is not that of the model.
+
+    `text` is a line as typed, of which the reader leaves out the units of instants.  None where
+    the units of the model do not tell the unit of its time.
+
+    >>> other_time_unit(r"T(1\,\mathrm{min}) = 14.46", {"G": "W/K", "C": "J/K"})
+    'min'
+    """
+    seconds = seconds_in_time(units)
+    found = INSTANT.search(text)
+    if seconds is None or found is None or not re.search(r"\d", found[1]):
+        return None
+    for word in TIME_UNIT.findall(found[1]):
+        unit = read_unit(word)
+        if unit is not None and unit.factor != seconds:
+            return str(word)
+    return None
 
 
 def in_model_units(claim: Claim, units: Mapping[str, str]) -> Claim | str:
