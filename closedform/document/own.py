@@ -81,6 +81,8 @@ def check_file(path: str | Path, *, model: str | Path | None = None) -> CheckRep
 def _begins_as_writeup(file: Path) -> bool:
     """Whether the first lines say so; a file that cannot be read is none."""
     try:
+        if not file.is_file():
+            return False
         with file.open("rb") as opened:
             head = opened.read(HEAD)
     except OSError:

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import replace
 from fractions import Fraction
+from functools import partial
 
 from flint import acb
 
@@ -35,19 +36,25 @@ def judge_value(claim: Claim, setting: Setting) -> Finding:
     if instant is None or not claim.subject:
         return judge_identity(claim, setting)
 
-    def true(ground: Ground) -> Value:
+    def true(ground: Ground, after: tuple[int, ...] = (0, 1)) -> Value:
         at = setting.value(instant, ground)
         if isinstance(at, ExactMatrix) or not at.is_constant:
             raise NotJudgedError("the instant of a value is a number")
         for stretch in reversed(ground.stretches):
-            if len(ground.stretches) == 1 or (at - stretch.start).sign() in (0, 1):
+            if len(ground.stretches) == 1 or (at - stretch.start).sign() in after:
                 value = solution_value(claim.subject, ground.within(stretch), stretch)
                 return (
                     value.at(at) if isinstance(value, Element) else value.mapped(lambda e: e.at(at))
                 )
         raise NotJudgedError("it is not decided where the instant lies on the time axis")
 
-    return held_against(claim, setting, true, lambda ground: written_back(true(ground)))
+    found = held_against(claim, setting, true, lambda ground: written_back(true(ground)))
+    starts = (stretch.start for stretch in setting.ground.stretches[1:])
+    if found.word == "fails" and any(setting.value(instant) == start for start in starts):
+        before = held_against(claim, setting, partial(true, after=(1,)))
+        if before.passes:
+            raise NotJudgedError("it is the value just before a jump, and another follows at once")
+    return found
 
 
 def judge_quantity(claim: Claim, setting: Setting) -> Finding:

@@ -58,7 +58,9 @@ def read_line(line: SourceLine, facts: Facts) -> ReadLine:
     of, at = _number(_stated(whose, facts)), _stated(line.at, facts)
     for key, text, found in (("of", whose, of), ("at", line.at, at)):
         if text.strip() and found is None:
-            trouble = f"what is said under '{key}' is no formula that can be read: {quoted(text)}"
+            trouble = (
+                f"what is said under '{key}' is not one formula that can be read: {quoted(text)}"
+            )
             return ReadLine(line, None, trouble)
     return ReadLine(line, reading, "", of, at)
 
@@ -79,7 +81,7 @@ VECTORS = ("eigenvector", "generalized eigenvector")
 
 
 def _stated(text: str, facts: Facts) -> Written | None:
-    """Return what an author states beside a line, LaTeX or typed; None if it is no formula."""
+    """Return what an author states beside a line, LaTeX or typed; None if it is not one formula."""
     if not text.strip():
         return None
     read = read_latex if "\\" in text else read_typed
@@ -87,8 +89,9 @@ def _stated(text: str, facts: Facts) -> Written | None:
         reading = read(text, facts.declared)
     except NotReadError:
         return None
-    members = reading.statements[0].members if reading.statements else ()
-    return members[-1] if members else None
+    if len(reading.statements) != 1:
+        return None
+    return reading.statements[0].members[-1]
 
 
 def _number(tree: Written | None) -> Written | None:

@@ -11,6 +11,7 @@ from closedform.algebra.elementary import NotElementaryError
 from closedform.algebra.enclosure import decimal_order, exact_decimal
 from closedform.checking.balls.enclosing import NoValueError, Quantities
 from closedform.checking.digits import Difference, largest_difference
+from closedform.checking.errors import NotJudgedError
 from closedform.checking.slips.measuring import size
 from closedform.checking.slips.trial import BITS, Trial
 from closedform.checking.values.matrices import ExactMatrix
@@ -23,7 +24,7 @@ __all__ = ["residual_text"]
 SHOWN_DIGITS = 4
 SAMPLED = (Fraction(0), Fraction(1, 2), Fraction(1), Fraction(2), Fraction(5))
 MOST_TOLD = 4
-OUTSIDE = (NoValueError, NotElementaryError, ArithmeticError)
+OUTSIDE = (NotJudgedError, NoValueError, NotElementaryError, ArithmeticError)
 Pairs = Sequence[tuple[Written, Written]]
 
 

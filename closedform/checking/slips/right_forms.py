@@ -25,9 +25,9 @@ def right_form(claim: Claim, finding: Finding, setting: Setting) -> Written | No
         return finding.right
     try:
         matrix = _transformation(setting, setting.ground_for(setting.opened(claim.values[-1])))
+        return None if matrix is None else written_back(matrix)
     except OUTSIDE:
         return None
-    return None if matrix is None else written_back(matrix)
 
 
 def _transformation(setting: Setting, ground: Ground) -> ExactMatrix | None:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import stat
 from pathlib import Path
 
 from closedform.checking.source.errors import (
@@ -14,7 +15,7 @@ from closedform.errors import Place
 from closedform.notation.documents.errors import IncludedFileError
 from closedform.notation.documents.weaving import TextFile
 
-__all__ = ["LARGEST_DOCUMENT", "Folder", "is_there", "model_path", "read_text"]
+__all__ = ["LARGEST_DOCUMENT", "Folder", "demand_file", "is_there", "model_path", "read_text"]
 
 LARGEST_DOCUMENT = 8_000_000
 """Bytes of a file with a derivation."""
@@ -32,6 +33,7 @@ def read_text(path: Path, name: str, largest: int = LARGEST_DOCUMENT) -> str:
     try:
         if path.is_dir():
             raise SourceFileError(place, "this is a folder; name the file inside it")
+        demand_file(path, name)
         with path.open("rb") as file:
             data = file.read(largest + 1)
     except FileNotFoundError:
@@ -93,6 +95,17 @@ class Folder:
             shown = str(self.root / found.relative_to(self.inside))
             return TextFile(shown, read_text(found, shown))
         raise IncludedFileError(place, name, "there is no such file; check the name and the folder")
+
+
+def demand_file(path: Path, name: str) -> None:
+    """Raise SourceFileError for a pipe or a device: it may never end.  `name` stands in it."""
+    try:
+        mode = path.stat().st_mode
+    except (OSError, ValueError):  # reading it tells why
+        return
+    if not (stat.S_ISREG(mode) or stat.S_ISDIR(mode)):
+        reason = "this is a pipe or a device; save what it gives as a file, and name that"
+        raise SourceFileError(Place(name), reason)
 
 
 def is_there(path: Path) -> bool:

@@ -37,7 +37,7 @@ from closedform.checking.source.errors import (
     StatedTwiceError,
     StrayRemarkError,
 )
-from closedform.checking.source.files import Folder, is_there, model_path, read_text
+from closedform.checking.source.files import Folder, demand_file, is_there, model_path, read_text
 from closedform.checking.source.remarks import DOCUMENT_KEYS, read_remark
 from closedform.checking.source.toml_table import Table, read_table
 from closedform.errors import Place
@@ -94,6 +94,7 @@ def read_source(path: Path | str, *, model: Path | str | None = None) -> Source:
         lines = tuple(line if line.where else replace(line, where=where) for line in lines)
     if model is not None:
         name, found = str(model), Path(model)
+        demand_file(found, name)
     else:
         name, place = said.get("model", ("", Place()))
         if not name:
