@@ -26,6 +26,11 @@ SWITCHED = {
     "initial": {"x": "0"},
     "inputs": {"u": "3*step(t) - 3*step(t - 1)"},
 }
+SPRING_IN_LETTERS = {
+    "equations": ["m*x'' + c*x' + k*x = 0"],
+    "initial": {"x": "x_0", "x'": "0"},
+    "parameters": symbols(m=None, c=None, k=None, x_0=None),
+}
 RESONANT = {
     "equations": ["m*x'' + k*x = F*cos(w*t)"],
     "initial": {"x": "0", "x'": "0"},
@@ -284,3 +289,14 @@ def test_what_is_transformed_back_is_looked_at() -> None:
     matrix = r"e^{At}=\mathcal L^{-1}\{(sI-A)^{-1}\}"
     found = held(TANKS, right, wrong, matrix)
     assert [v.verdict for v in found] == ["holds", "fails", "holds"]
+
+
+def test_a_name_may_be_used_before_it_is_defined() -> None:
+    found = held(
+        SPRING_IN_LETTERS,
+        r"\omega_d=\omega_n\sqrt{1-\zeta^2}",
+        r"\omega_n=\sqrt{k/m}",
+        r"\zeta=\frac{c}{2\sqrt{km}}",
+        r"x(t)=x_0e^{-\zeta\omega_nt}\left(\cos\omega_dt+\frac{\zeta\omega_n}{\omega_d}\sin\omega_dt\right)",
+    )
+    assert found[-1].passes, found[-1]

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field, replace
-from itertools import pairwise
+from itertools import islice, pairwise
 
 from closedform.checking.claim import Claim
 from closedform.notation.written.tree import (
@@ -23,6 +24,10 @@ from closedform.notation.written.tree import (
 )
 
 __all__ = ["Author", "Entry"]
+
+
+MOST_PUT_IN = 5_000
+"""Parts of what is put in for names: definitions may double at every line."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -131,15 +136,22 @@ class Author:
     def put_in(self, tree: Written) -> Written:
         """Return a formula with the author's names replaced by what they stand for.
 
-        Names among `kept` stay: those that the model itself gives a meaning.
+        Names among `kept` stay: those that the model itself gives a meaning.  A name that was
+        defined by another before that was itself defined is followed to the end.  Names stay, too,
+        where all that is put in would have more than `MOST_PUT_IN` parts.
         """
         known = {n: v for n, v in self.definitions.items() if n not in self.kept}
-        if not known:
-            return tree
+        return self._put(tree, known, Counter(left=MOST_PUT_IN)) if known else tree
 
+    def _put(self, tree: Written, known: Mapping[str, Written], parts: Counter[str]) -> Written:
         def change(node: Written) -> Written | None:
-            if isinstance(node, Symbol):
-                return known.get(node.name)
+            if isinstance(node, Symbol) and node.name in known:
+                value = known[node.name]
+                parts["left"] -= sum(1 for _ in islice(walk(value), MOST_PUT_IN))
+                if parts["left"] < 0:
+                    return None
+                others = {n: v for n, v in known.items() if n != node.name}
+                return self._put(value, others, parts)
             if isinstance(node, Jet) and node.name in known:
                 return self._function(node, known[node.name])
             return self._called(node, known) if isinstance(node, Product) else None
