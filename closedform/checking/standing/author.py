@@ -147,8 +147,9 @@ class Author:
         def change(node: Written) -> Written | None:
             if isinstance(node, Symbol) and node.name in known:
                 value = known[node.name]
-                parts["left"] -= sum(1 for _ in islice(walk(value), MOST_PUT_IN))
-                if parts["left"] < 0:
+                if parts["left"] > 0:
+                    parts["left"] -= sum(1 for _ in islice(walk(value), MOST_PUT_IN))
+                if parts["left"] <= 0:
                     return None
                 others = {n: v for n, v in known.items() if n != node.name}
                 return self._put(value, others, parts)
