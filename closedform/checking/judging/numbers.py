@@ -32,7 +32,8 @@ __all__ = ["QUANTITIES", "judge_definition", "judge_identity", "judge_quantity",
 
 def judge_value(claim: Claim, setting: Setting) -> Finding:
     """Judge the value of a state, a derivative or an output at an instant."""
-    instant = claim.at
+    at_start = setting.ground.truth.start if claim.says == "initial value" else None
+    instant = claim.at if claim.at is not None else at_start
     if instant is None or not claim.subject:
         return judge_identity(claim, setting)
 

@@ -15,6 +15,7 @@ from closedform.checking.recognising.shapes import (
     is_column,
     is_constant_column,
     is_equation,
+    is_initial_column,
     is_matrix,
     is_of_coordinates,
     is_vector_name,
@@ -147,6 +148,8 @@ def _left(statement: Statement, facts: Facts) -> Left | None:
         left = None
     if left is not None and left.says == "solution" and is_constant_column(first, rest, facts):
         return Left("eigenvector", left.subject)
+    if is_initial_column(first, rest, facts):
+        return Left("initial value", "vector")
     if left is None and is_vector_name(first, rest):
         return Left("eigenvector", first.name if isinstance(first, Symbol) else "")
     return left

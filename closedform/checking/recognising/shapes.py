@@ -29,6 +29,7 @@ __all__ = [
     "is_column",
     "is_constant_column",
     "is_equation",
+    "is_initial_column",
     "is_matrix",
     "is_of_coordinates",
     "is_vector_name",
@@ -161,6 +162,15 @@ def is_vector_name(first: Written, rest: Sequence[Written]) -> bool:
         for node in walk(member)
     )
     return base in VECTORS and columns
+
+
+def is_initial_column(first: Written, rest: Sequence[Written], facts: Facts) -> bool:
+    """Whether x_0 stands for the column of the initial values."""
+    if not isinstance(first, Symbol) or first.name in facts.names:
+        return False
+    base, index = base_and_indices(first.name)
+    states = base in ("x", "xvec") or facts.has_vector(base)
+    return states and index == "0" and is_vector_name(first, rest)
 
 
 def is_constant_column(first: Written, rest: Sequence[Written], facts: Facts) -> bool:
