@@ -85,6 +85,11 @@ class ElementaryField:
         self._context.sums.left = products
 
     @property
+    def granted(self) -> int:
+        """How many products of constants may still be worked out."""
+        return max(0, self._context.sums.left)
+
+    @property
     def e(self) -> Element:
         """The number 2.71828…."""
         return self.exp(self.one)

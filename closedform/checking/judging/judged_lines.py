@@ -38,6 +38,8 @@ GRAVEST_FIRST: tuple[Word, ...] = (
 """A line that says several things has the verdict of the gravest finding."""
 MOST_PRODUCTS = 300_000
 """Products of constants for one line: some seconds of work."""
+MOST_IN_ALL = 3_000_000
+"""Products of constants for all lines: what is left then is not decided."""
 MOST_NODES = 1_500
 """Parts of a line in which its slip is looked for."""
 
@@ -78,7 +80,7 @@ def judged_lines(lines: Sequence[SourceLine], truth: Truth, grounds: Grounds) ->
     ground = grounds.of(truth)
     read = [_read(line, ground.facts) for line in lines]
     author = Author(kept=ground.facts.names, time=ground.facts.time)
-    found = []
+    found, left = [], MOST_IN_ALL
     for place, (as_read, claims) in enumerate(read):
         line = as_read
         later = tuple(claim for _, claims in read[place + 1 :] for claim in claims)
@@ -91,8 +93,10 @@ def judged_lines(lines: Sequence[SourceLine], truth: Truth, grounds: Grounds) ->
         if not own:
             line, own = replace(line, reading=None, trouble=NO_CASE), (ground,)
         for candidate in own:
-            candidate.field.grant(MOST_PRODUCTS)
+            granted = min(MOST_PRODUCTS, left)
+            candidate.field.grant(granted)
             judged_line, after = _judged_line(line, Setting(candidate, author, later))
+            left -= granted - candidate.field.granted
             if judged_line.passes != in_pieces:
                 break
         author = after

@@ -147,14 +147,14 @@ class Author:
         def change(node: Written) -> Written | None:
             if isinstance(node, Symbol) and node.name in known:
                 value = known[node.name]
-                if parts["left"] > 0:
-                    parts["left"] -= sum(1 for _ in islice(walk(value), MOST_PUT_IN))
-                if parts["left"] <= 0:
+                if not _may_have(value, parts):
                     return None
                 others = {n: v for n, v in known.items() if n != node.name}
                 return self._put(value, others, parts)
             if isinstance(node, Jet) and node.name in known:
-                return self._function(node, known[node.name])
+                value = known[node.name]
+                at = None if node.at is None else self._put(node.at, known, parts)
+                return self._function(node, value, at) if _may_have(value, parts) else None
             return self._called(node, known) if isinstance(node, Product) else None
 
         return changed(tree, change)
@@ -175,7 +175,7 @@ class Author:
                 return self.put_in(rest)
         return None
 
-    def _function(self, jet: Jet, value: Written) -> Written:
+    def _function(self, jet: Jet, value: Written, at: Written | None) -> Written:
         """Return a function of the author's, its derivative, or its value at an instant."""
         if jet.order:
             value = Derivative(value, self.time, jet.order)
@@ -183,4 +183,11 @@ class Author:
             return value
         if jet.at == INFINITY:
             return Limit(value, self.time, INFINITY)
-        return Evaluated(value, self.time, self.put_in(jet.at))
+        return Evaluated(value, self.time, jet.at if at is None else at)
+
+
+def _may_have(value: Written, parts: Counter[str]) -> bool:
+    """Take the parts of a value from what may still be put in; false where that is used up."""
+    if parts["left"] > 0:
+        parts["left"] -= sum(1 for _ in islice(walk(value), MOST_PUT_IN))
+    return parts["left"] > 0
