@@ -460,3 +460,19 @@ def test_a_report_has_to_have_room(put: Callable[..., Path]) -> None:
             write_check(report, into=into)
     with pytest.raises(InputError, match="no template"):
         write_check(report, into=file.parent, template="none")
+
+
+DOUBLED = [
+    r"w_{{{}}}=w_{{{}}}+w_{{{}}}",
+    r"w_{{{}}}=w_{{{}}}w_{{{}}}+t",
+    r"w_{{{}}}(t)=w_{{{}}}(w_{{{}}}(t))",
+]
+
+
+@pytest.mark.parametrize("form", DOUBLED)
+def test_definitions_that_double_at_every_line_come_to_an_end(form: str) -> None:
+    lines = [form.format(k, k - 1, k - 1) for k in range(2, 18)]
+    first = "w_{1}(t)=1+t" if "(t)" in form else "w_{1}=1+t"
+    found = held(TANKS, first, *lines, r"x=w_{17}", r"y=e^{-2t}")
+    assert not found[-2].passes
+    assert found[-1].verdict == "holds"

@@ -38,7 +38,7 @@ GRAVEST_FIRST: tuple[Word, ...] = (
 """A line that says several things has the verdict of the gravest finding."""
 MOST_PRODUCTS = 300_000
 """Products of constants for one line: some seconds of work."""
-MOST_IN_ALL = 3_000_000
+MOST_IN_ALL = 1_500_000
 """Products of constants for all lines: what is left then is not decided."""
 MOST_NODES = 1_500
 """Parts of a line in which its slip is looked for."""

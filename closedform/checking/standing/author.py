@@ -26,7 +26,7 @@ from closedform.notation.written.tree import (
 __all__ = ["Author", "Entry"]
 
 
-MOST_PUT_IN = 5_000
+MOST_PUT_IN = 3_000
 """Parts of what is put in for names: definitions may double at every line."""
 
 
