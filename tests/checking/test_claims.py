@@ -300,3 +300,8 @@ def test_a_name_may_be_used_before_it_is_defined() -> None:
         r"x(t)=x_0e^{-\zeta\omega_nt}\left(\cos\omega_dt+\frac{\zeta\omega_n}{\omega_d}\sin\omega_dt\right)",
     )
     assert found[-1].passes, found[-1]
+
+
+def test_the_order_of_a_derivative_is_not_cut_off() -> None:
+    (found,) = held(SPRING, r"x^{(1234)}(0)=0")
+    assert found.verdict == "not read"

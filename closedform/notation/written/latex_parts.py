@@ -31,6 +31,9 @@ LONGEST_RUN = 60  # letters side by side that can be one name
 OPENING = {"(": "(", "[": "[", "lbrace": "{", "{": "{", "lbrack": "[", "lparen": "("}
 CLOSING = {")": "(", "]": "[", "rbrace": "{", "}": "{", "rbrack": "[", "rparen": "("}
 
+MOST_ORDER_DIGITS = 3
+"""Digits of the order of a derivative; what has more is a name that nothing explains."""
+
 
 class LatexParts(LatexScripted):
     """Reads the raw tokens of one text."""
@@ -265,8 +268,9 @@ class LatexParts(LatexScripted):
             return spelling, 0, mark
         inside = mark[1:-1]
         declared = self.names.find(spelling, bold=bold)
-        if inside.isdecimal() and declared is not None and self.names.varies(declared):
-            return spelling, int(inside[:3]), "done"
+        order = inside.isdecimal() and len(inside) <= MOST_ORDER_DIGITS
+        if order and declared is not None and self.names.varies(declared):
+            return spelling, int(inside), "done"
         return f"{spelling}_{inside}", 0, "done"
 
     def function(
