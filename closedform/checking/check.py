@@ -60,13 +60,16 @@ def _best(
     source: Source, truths: tuple[Truth, ...], grounds: Grounds
 ) -> tuple[Truth, list[JudgedLine]]:
     """Return the case in which most lines hold, the first of several, and the lines in it."""
-    best: tuple[int, Truth, list[JudgedLine]] | None = None
-    for truth in truths:
-        lines = judged_lines(source.lines, truth, grounds)
-        passing = sum(line.passes for line in lines)
-        if best is None or passing > best[0]:
-            best = passing, truth, lines
-        if passing == len(lines):
+    best = truths[0], judged_lines(source.lines, truths[0], grounds)
+    for truth in truths[1:]:
+        if _passing(best[1]) == len(best[1]):
             break
-    assert best is not None  # noqa: S101  a model has a case
-    return best[1:]
+        lines = judged_lines(source.lines, truth, grounds)
+        if _passing(lines) > _passing(best[1]):
+            best = truth, lines
+    return best
+
+
+def _passing(lines: list[JudgedLine]) -> int:
+    """Count the lines that hold."""
+    return sum(line.passes for line in lines)
